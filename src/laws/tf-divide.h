@@ -1,0 +1,63 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfDivide: the line on the wings that parts an old cycle from the new one about a minimum, one a minimum and hemisphere.
+ *
+ * It acts from 24 months before to 18 months after the minimum (options). Computed: midway between the latitudes expected of
+ * the old and the new cycle; moved: a polyline a person drew. Within band_deg of it a region's cycle is unsure. A
+ * cycle is told from time and latitude only, never from polarity. A set of divides belongs to a study.
+ */
+
+#include <glib.h>
+
+#include "tf-cycle.h"
+#include "tf-note.h"
+#include "tf-option.h"
+
+G_BEGIN_DECLS
+
+typedef struct
+{
+  int before_months, after_months; /* 24, 18 */
+  double band_deg;                 /* 4 */
+  double far_lat_deg;              /* 22: from -36 to -24 months, |lat| >= this is unsure */
+  double near_lat_deg;             /* 6: from +18 to +30 months, |lat| < this is unsure */
+  double late_months;              /* 48 after a maximum with no next minimum listed ... */
+  double late_lat_deg;             /* ... |lat| > 18 is unsure */
+  gboolean by_date_only;           /* what-if: the date alone */
+  double provisional_year;         /* a person's provisional next minimum, decimal year; NaN none */
+} TfDivideParams;
+extern const TfOption tf_divide_options[];
+
+typedef struct _TfDivides TfDivides; /* immutable, reference counted */
+
+/** tf_divides_new: all computed. */
+TfDivides *tf_divides_new (const TfDivideParams *params);
+/** tf_divides_with: a copy in which the divide at the minimum beginning @cycle, hemisphere +1/-1, follows @n points
+ * (time, |lat|), sorted by time; n 0 sets it back to computed. */
+TfDivides *tf_divides_with (const TfDivides *divides, int cycle, int hemisphere, const TfTime *times,
+                            const double *lats, guint n);
+TfDivides *tf_divides_ref (TfDivides *divides);
+void tf_divides_unref (TfDivides *divides);
+const TfDivideParams *tf_divides_get_params (const TfDivides *divides);
+gboolean tf_divides_is_moved (const TfDivides *divides, int cycle, int hemisphere);
+/** tf_divides_latitude: |lat| of the divide about the minimum beginning @cycle; NaN where it does not act. */
+double tf_divides_latitude (const TfDivides *divides, int cycle, int hemisphere, TfTime time);
+
+typedef struct
+{
+  int number;          /* the cycle, or the likelier one when unsure; 0 unknown */
+  int other;           /* when unsure: the other reading; 0 */
+  gboolean sure;
+  const char *reason;  /* note code: "cycle-by-date", "cycle-by-divide", "cycle-near-divide", "cycle-early-wing",
+                          "cycle-late-wing", "cycle-next-minimum-unknown", "cycle-provisional", "cycle-no-time" */
+} TfCycleCall;
+
+/** tf_divides_call: to which cycle a region at @lat_deg (signed) and @time belongs. */
+TfCycleCall tf_divides_call (const TfDivides *divides, TfTime time, double lat_deg);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfDivides, tf_divides_unref)
+
+G_END_DECLS

@@ -1,0 +1,74 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfJoy: tilt against latitude. Forms x estimators as a const table; this header has the default (linear through the origin,
+ * robust) and whatever rows are filled; a row not filled is not offered. */
+
+#include <glib.h>
+
+#include "tf-proportion.h"
+#include "tf-verdict.h"
+
+G_BEGIN_DECLS
+
+typedef enum
+{
+  TF_JOY_LINEAR,      /* tilt = m |lat| */
+  TF_JOY_LINEAR_FREE, /* tilt = m |lat| + c */
+  TF_JOY_SINE,        /* tilt = b sin |lat| */
+  TF_JOY_SINE_OF_TILT /* sin tilt = b sin |lat| */
+} TfJoyForm;
+typedef enum
+{
+  TF_JOY_LEAST_SQUARES,
+  TF_JOY_FLUX_WEIGHTED,
+  TF_JOY_ROBUST,
+  TF_JOY_BIN_MEDIANS,
+} TfJoyEstimator;
+
+typedef struct
+{
+  int form, estimator;
+  gboolean with_breaks;      /* FALSE: verdict not "breaks" */
+  double compactness_min;    /* 0.5; rows without compactness pass */
+  double separation_min_deg; /* 0 */
+  double steep_max_deg;      /* 90: |tilt| above is left out */
+  double level;
+  int draws, seed;
+} TfJoyParams;
+extern const TfOption tf_joy_options[];
+extern const char *const tf_joy_form_names[];      /* "linear" "linear-free" "sine" "sine-of-tilt" */
+extern const char *const tf_joy_estimator_names[]; /* "least-squares" "flux-weighted" "robust" "bin-medians" */
+
+typedef struct
+{
+  int cycle, hemisphere; /* 0: all / both */
+  guint n, regions, no_polarity;
+  double slope, intercept;  /* deg/deg; SINE: deg; SINE_OF_TILT: 1. intercept NaN where the form has none */
+  TfInterval slope_ci, intercept_ci; /* bootstrap clustered by region */
+  double scatter_deg;       /* 1.4826 MAD of the residuals */
+  double mean_tilt_deg, median_tilt_deg;
+} TfJoyFit;
+
+/** tf_joy_fit: one cycle and hemisphere (0: all / both). NaN slope when fewer than 3 rows. */
+TfJoyFit tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
+                     const TfJoyParams *params);
+/** tf_joy_uses: whether a row enters the default Joy sample. */
+gboolean tf_joy_uses (const TfSampleRow *row, const TfVerdict *verdict, const TfJoyParams *params);
+const char *tf_joy_unit (TfJoyForm form);
+
+/** TfJoyRelation: a published relation. */
+typedef struct
+{
+  const char *name, *source;
+  gboolean magnetic; /* else white light */
+  double (*tilt) (double abs_lat_deg);
+} TfJoyRelation;
+extern const TfJoyRelation tf_joy_relations[]; /* ends with name NULL; index 0: Stenflo & Kosovichev 2012 */
+
+/** tf_joy_expected: where Joy's law would put a tilt: centre and scatter, deg, at |lat| and separation. */
+void tf_joy_expected (double lat_deg, double separation_deg, double *tilt_deg, double *scatter_deg);
+
+G_END_DECLS

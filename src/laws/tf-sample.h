@@ -1,0 +1,65 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfSample: the rows a law is tested on, as plain columns; row k of every column is one pick.
+ *
+ * Filled by study (from a ledger), by simulate, or from an outside table. Laws never change it. A quantity that a source lacks
+ * is NaN (numbers), 0 (polarity), -1 (yes/no).
+ */
+
+#include <glib.h>
+
+#include "tf-time.h"
+
+G_BEGIN_DECLS
+
+typedef enum
+{
+  TF_ORIGIN_HINT,
+  TF_ORIGIN_KEPT,    /* "kept as hinted" */
+  TF_ORIGIN_CHANGED,
+  TF_ORIGIN_DRAWN,   /* "drawn new" */
+  TF_ORIGIN_OUTSIDE,
+} TfOrigin;
+
+typedef struct
+{
+  TfTime time;
+  guint32 region;         /* cluster: rows of one region share it */
+  guint32 passage;
+  double lat_deg;         /* midpoint of the poles, signed */
+  double leading_lat_deg, following_lat_deg;
+  double cmd_deg, mu;
+  double axis_tilt_deg;   /* NaN when straddling or absent */
+  double axis_bearing_deg;
+  double tilt_sigma_deg;
+  double separation_deg, separation_sigma_deg;
+  double flux_mx;         /* unsigned */
+  double imbalance;       /* (+ - -)/(+ + -) */
+  double compactness;
+  double axial_dipole_gauss;
+  int leading_polarity;   /* 1, -1, 0 none in the source */
+  gint8 leading_sure;     /* 1 yes, 0 no, -1 the source does not say */
+  gint8 witnesses_differ; /* 1, 0, -1 */
+  gint8 straddles;        /* poles on opposite sides of the equator */
+  gint8 size;             /* 0 region, 1 ephemeral, -1 unknown */
+  TfOrigin origin;
+} TfSampleRow;
+
+typedef struct _TfSample TfSample; /* growable until frozen by first reader's convention: fill, then read */
+
+TfSample *tf_sample_new (void);
+void tf_sample_free (TfSample *sample);
+/** tf_sample_row_init: every quantity "absent". */
+void tf_sample_row_init (TfSampleRow *row);
+void tf_sample_add (TfSample *sample, const TfSampleRow *row);
+guint tf_sample_get_n (const TfSample *sample);
+const TfSampleRow *tf_sample_get (const TfSample *sample, guint k);
+guint tf_sample_count_regions (const TfSample *sample);
+guint tf_sample_count_passages (const TfSample *sample);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfSample, tf_sample_free)
+
+G_END_DECLS
