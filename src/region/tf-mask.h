@@ -1,0 +1,45 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfMask: which pixels of a frame lie in an outline: a box of the frame, one byte a pixel.
+ *
+ * A pixel belongs when its centre lies inside the outline (carried to the frame's time), outside left-out areas, is finite, and
+ * mu >= mu_min (maps: always). Per pixel the mask keeps mu, area and the unit vector, so that floors and deformations
+ * can be tried without geometry.
+ */
+
+#include <glib.h>
+
+#include "tf-frame.h"
+#include "tf-outline.h"
+
+G_BEGIN_DECLS
+
+typedef struct
+{
+  guint32 x, y;     /* 0-based column and row of the frame */
+  float field;      /* G as observed */
+  float mu;         /* 1 on maps */
+  double area_mm2;  /* on the Sun */
+  double unit[3];   /* Carrington frame */
+} TfMaskPixel;
+
+typedef struct _TfMask TfMask; /* immutable, reference counted */
+
+/** tf_mask_new: @outline at any time: it is carried to the frame's by rotation law @law. An outline wholly behind the limb gives no pixels. */
+TfMask *tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law);
+TfMask *tf_mask_ref (TfMask *mask);
+void tf_mask_unref (TfMask *mask);
+guint tf_mask_get_n (const TfMask *mask);
+const TfMaskPixel *tf_mask_get (const TfMask *mask, guint k);
+/** tf_mask_get_missing: pixels inside the outline without a value (on the disk); tf_mask_get_cut: part of the outline beyond mu_min or the frame (0-1). */
+guint tf_mask_get_missing (const TfMask *mask);
+double tf_mask_get_cut (const TfMask *mask);
+/** tf_mask_get_grid: box of the frame that holds the mask; index of pixel in the list or -1, row-major. */
+const gint32 *tf_mask_get_grid (const TfMask *mask, guint *x0, guint *y0, guint *width, guint *height);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfMask, tf_mask_unref)
+
+G_END_DECLS
