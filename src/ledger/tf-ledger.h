@@ -1,0 +1,217 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfLedger: one SQLite file holding everything a person or team has recorded.
+ *
+ * One handle is one connection and belongs to one thread at a time; several handles, threads and processes may have the same
+ * file open (WAL). Every function that writes is one transaction: when it returns TRUE the deed is on the disk.
+ *
+ * A person's deeds are append-only acts keyed (replica, seq) without gaps, hash-chained; marks, notes, classes and so on are
+ * projections that tf_ledger_check() rebuilds and compares. Machine-made rows (frames, hints, measures) have content ids and are put in
+ * once however often they come. Nothing judged (cycle, verdict) is stored. The schema is drawn in tf-ledger-schema.c.
+ *
+ * Ids in this header: int64 keys are local to the file; text ids (32 or 64 hex digits) are the same everywhere.
+ */
+
+#include <glib.h>
+
+#include "tf-frame.h"
+#include "tf-hint.h"
+#include "tf-measure.h"
+#include "tf-outline.h"
+
+G_BEGIN_DECLS
+
+#define TF_LEDGER_ERROR (tf_ledger_error_quark ())
+GQuark tf_ledger_error_quark (void);
+typedef enum
+{
+  TF_LEDGER_ERROR_OPEN,      /* not there, not a ledger, not readable */
+  TF_LEDGER_ERROR_READ_ONLY, /* newer version, folder or file not writable: reading works */
+  TF_LEDGER_ERROR_BUSY,      /* another program held the lock for longer than we wait (10 s) */
+  TF_LEDGER_ERROR_FULL,      /* disk full: nothing was changed */
+  TF_LEDGER_ERROR_DAMAGED,   /* the file or the chain of acts is damaged */
+  TF_LEDGER_ERROR_FORK,      /* this file is a copy of another that went on: a new replica was begun; informational when opening */
+  TF_LEDGER_ERROR_STATE,     /* the deed does not fit what is recorded (no such mark, nothing to undo) */
+  TF_LEDGER_ERROR_DATABASE,  /* anything else SQLite says */
+} TfLedgerError;
+
+typedef struct _TfLedger TfLedger;
+
+/* -- the file -------------------------------------------------------------------------------- */
+/** tf_ledger_create: fails when the file is there. @letter: A-Z, of own region numbers. */
+TfLedger *tf_ledger_create (const char *path, char letter, GError **error);
+/** tf_ledger_open: migrates an older one (backing it up beside itself first), opens a newer or unwritable one read-only.
+ * A copied or restored file is told from its replica's state (in the user's state folder, or @state_dir) and gets a new replica. */
+TfLedger *tf_ledger_open (const char *path, GError **error);
+/** tf_ledger_open_or_create: what `fill` does. */
+TfLedger *tf_ledger_open_or_create (const char *path, char letter, GError **error);
+void tf_ledger_close (TfLedger *ledger);
+const char *tf_ledger_get_path (const TfLedger *ledger);
+/** tf_ledger_get_read_only: why nothing can be written, or NULL. Borrowed. */
+const TfNote *tf_ledger_get_read_only (const TfLedger *ledger);
+/** tf_ledger_get_notices: what opening found worth saying (fork noticed, migrated with a backup at ..., clock set back). Borrowed. */
+const TfNotes *tf_ledger_get_notices (const TfLedger *ledger);
+/** tf_ledger_get_version: PRAGMA data_version: changes when another connection has written. */
+gint64 tf_ledger_get_version (TfLedger *ledger);
+
+/* -- persons --------------------------------------------------------------------------------- */
+/** tf_ledger_person: local key of a person's name, recorded by an act when new; 0 on error. */
+gint64 tf_ledger_person (TfLedger *ledger, const char *name, GError **error);
+/** tf_ledger_dup_persons: (transfer full): NULL-ended names in order of first deed. */
+char **tf_ledger_dup_persons (TfLedger *ledger);
+
+/* -- frames ---------------------------------------------------------------------------------- */
+typedef struct
+{
+  gint64 id;
+  char *content_id;   /* of checksum, HDU and plane */
+  char *path;         /* last place it was seen; absolute */
+  char *checksum;     /* SHA-256 of the file */
+  int hdu, plane;
+  TfFrameInfo *info;  /* as it was read; geometry included; never NULL */
+  double noise_gauss; /* at mu 0.5, as observed; NaN for refused */
+  guint n_hints;      /* not yet judged */
+  guint n_marks;      /* live marks on it */
+  gboolean done;      /* no hint waits and somebody has judged */
+  char *refusal;      /* English sentence; NULL when usable */
+} TfFrameRow;
+void tf_frame_row_free (TfFrameRow *row);
+
+/** tf_ledger_add_frame: puts a frame in once; a known checksum at a new path updates the path. @noise_gauss: NaN when refused.
+ * Returns its local key, 0 on error. */
+gint64 tf_ledger_add_frame (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane,
+                            const TfFrameInfo *info, double noise_gauss, GError **error);
+/** tf_ledger_find_frame: by checksum, HDU, plane; 0 when not there. tf_ledger_find_file: size and mtime unchanged since last seen at this path. */
+gint64 tf_ledger_find_frame (TfLedger *ledger, const char *checksum, int hdu, int plane);
+gint64 tf_ledger_find_file (TfLedger *ledger, const char *path);
+/** tf_ledger_frames: (element-type TfFrameRow) in time order, unknown times last. */
+GPtrArray *tf_ledger_frames (TfLedger *ledger, GError **error);
+TfFrameRow *tf_ledger_frame (TfLedger *ledger, gint64 id, GError **error);
+
+/* -- hints and measures (machine rows) -------------------------------------------------------- */
+/** tf_ledger_add_hints: all hints of one frame by one rule, with their measures; a second time changes nothing. An empty array records that
+ * the rule was run. @rule, @method: canonical option texts. */
+gboolean tf_ledger_add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
+                              const char *method, GError **error);
+/** tf_ledger_has_hints: whether the rule was run on the frame. */
+gboolean tf_ledger_has_hints (TfLedger *ledger, gint64 frame, const char *rule);
+
+/* -- marks ----------------------------------------------------------------------------------- */
+typedef enum
+{
+  TF_MARK_KEPT,    /* "kept as hinted" */
+  TF_MARK_CHANGED, /* from a hint or an older mark */
+  TF_MARK_DRAWN,   /* "drawn new" */
+} TfMarkOrigin;
+
+/** TfMarkDeed: what a person keeps. */
+typedef struct
+{
+  gint64 frame;
+  gint64 person;
+  gint64 hint;             /* the hint it came from; 0 */
+  gint64 follows;          /* the mark it takes the place of; 0. Keeps the region */
+  gint64 region;           /* an existing region it belongs to; 0 with follows 0: a new region with the next number */
+  TfMarkOrigin origin;
+  const TfOutline *outline;
+  const TfMeasure *measure;
+  const char *method;      /* canonical option text */
+  const char *label;       /* nullable */
+} TfMarkDeed;
+
+/** tf_ledger_keep: returns the mark's local key, 0 on error. */
+gint64 tf_ledger_keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error);
+/** tf_ledger_drop_hint: the person says it is no region (or takes that back by undo). */
+gboolean tf_ledger_drop_hint (TfLedger *ledger, gint64 hint, gint64 person, GError **error);
+/** tf_ledger_withdraw: a mark is taken back; it stays in the journal. */
+gboolean tf_ledger_withdraw (TfLedger *ledger, gint64 mark, gint64 person, GError **error);
+gboolean tf_ledger_set_note (TfLedger *ledger, gint64 region, gint64 person, const char *text, GError **error);
+/** tf_ledger_set_class: Mount Wilson class of a region at a time by a person: "β", "βγδ" ...; "" clears. @evidence: "magnetogram", ... */
+gboolean tf_ledger_set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text,
+                              const char *evidence, GError **error);
+/** tf_ledger_undo: undoes the person's last deed of this replica that is not undone (redo: the last undo). The act undone is named in
+ * @what ("keep", "drop", ...); STATE when there is none. */
+gboolean tf_ledger_undo (TfLedger *ledger, gint64 person, char **what, GError **error);
+gboolean tf_ledger_redo (TfLedger *ledger, gint64 person, char **what, GError **error);
+gboolean tf_ledger_can_undo (TfLedger *ledger, gint64 person);
+gboolean tf_ledger_can_redo (TfLedger *ledger, gint64 person);
+
+/* -- rows: the flat columns of 6-commands, without what is judged ----------------------------- */
+typedef struct
+{
+  gint64 mark;          /* local key of the mark, or of the hint */
+  gboolean is_hint;
+  char *mark_id;        /* text id, the same everywhere */
+  gint64 frame;
+  gint64 region_key;    /* 0 for a hint */
+  char *region;         /* "T2013-0412"; "" for a hint */
+  char *passage;        /* until passages exist: the mark's own id */
+  const char *origin;   /* "hint", "kept as hinted", "changed", "drawn new", "outside": static */
+  char *label, *note, *mw_class; /* "" where none */
+  char *frame_path, *frame_checksum, *method, *program_version, *person, *instrument, *vantage;
+  const char *kind;     /* of the frame, static */
+  gboolean unipolar;    /* hints */
+  TfOutline *outline;
+  TfMeasure measure;    /* time, floors, poles, tilt, cautions ... */
+  char *time_source;
+  gboolean simulated;
+} TfRow;
+void tf_row_free (TfRow *row);
+
+typedef struct
+{
+  gboolean marks, hints; /* which */
+  gint64 frame;          /* 0: all */
+  gboolean judged_hints; /* hints that a person kept or dropped, too */
+} TfRowQuery;
+/** tf_ledger_rows: (element-type TfRow) live marks and open hints in time order. */
+GPtrArray *tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error);
+TfRow *tf_ledger_row (TfLedger *ledger, gint64 mark, gboolean is_hint, GError **error);
+
+/* -- points: the narrow table behind the wings ------------------------------------------------ */
+typedef struct
+{
+  gint64 mark;
+  gint64 frame;
+  double year;       /* decimal */
+  TfTime time;
+  float lat_deg, flux_mx, tilt_deg, mu, cmd_deg, separation_deg;
+  gint8 leading;     /* 1, -1, 0 */
+  gint8 leading_sure, hint, unipolar, straddles, witnesses_differ;
+  float imbalance;
+  guint32 region;    /* local key, 0 for hints */
+} TfPoint;
+/** tf_ledger_points: (element-type TfPoint) all live marks and open hints, in time order. */
+GArray *tf_ledger_points (TfLedger *ledger, GError **error);
+
+/* -- drafts ---------------------------------------------------------------------------------- */
+/** tf_ledger_set_draft: strokes between keeps: durable, local, does not travel. NULL @text removes. */
+gboolean tf_ledger_set_draft (TfLedger *ledger, gint64 frame, gint64 person, const char *text, GError **error);
+char *tf_ledger_dup_draft (TfLedger *ledger, gint64 frame, gint64 person);
+
+/* -- journal and check ------------------------------------------------------------------------ */
+typedef struct
+{
+  gint64 seq;
+  char *replica;  /* short */
+  TfTime wall;
+  char *kind;     /* "keep", "drop", "undo", ... */
+  char *person;
+  char *subject;  /* text id */
+  gboolean undone;
+} TfJournalEntry;
+void tf_journal_entry_free (TfJournalEntry *entry);
+/** tf_ledger_journal: (element-type TfJournalEntry) newest first, at most @limit. */
+GPtrArray *tf_ledger_journal (TfLedger *ledger, guint limit, GError **error);
+/** tf_ledger_check: file integrity, foreign keys, schema, chain of acts, projections rebuilt and compared, points. Adds what it
+ * finds wrong to @findings. FALSE only when the check itself could not run. */
+gboolean tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLedger, tf_ledger_close)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFrameRow, tf_frame_row_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRow, tf_row_free)
+
+G_END_DECLS

@@ -1,0 +1,91 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfStudy: which rows are taken, by which conventions, and what the laws say of them.
+ *
+ * Mark conditions act first, then the sampling rule picks one mark a passage, then region conditions act on the pick.
+ * Until passages exist every mark is its own passage, and the result says so.
+ */
+
+#include <glib.h>
+#include <json-glib/json-glib.h>
+
+#include "tf-divide.h"
+#include "tf-hale.h"
+#include "tf-joy.h"
+#include "tf-ledger.h"
+#include "tf-sample.h"
+#include "tf-verdict.h"
+
+G_BEGIN_DECLS
+
+#define TF_STUDY_ERROR (tf_study_error_quark ())
+GQuark tf_study_error_quark (void);
+typedef enum
+{
+  TF_STUDY_ERROR_EMPTY, /* nothing to judge: says what there is and how to take hints in */
+} TfStudyError;
+
+typedef struct
+{
+  gboolean with_hints;    /* hints counted apart from marks */
+  double cmd_max_deg;     /* 60; maps have no CMD and pass */
+  double mu_min;          /* 0 */
+  double flux_min_mx;     /* 0 */
+  double separation_min_deg; /* 0 */
+  gboolean with_ephemeral;
+  gboolean with_models;   /* model maps */
+} TfSieveParams;
+extern const TfOption tf_sieve_options[];
+
+typedef struct
+{
+  char *name;
+  TfSieveParams sieve;
+  TfVerdictParams verdict;
+  TfDivideParams divide;
+  TfHaleParams hale;
+  TfJoyParams joy;
+  TfDivides *divides; /* NULL: all computed */
+} TfStudy;
+TfStudy *tf_study_new_default (void);
+void tf_study_free (TfStudy *study);
+
+/** TfFindings: a sample with its verdicts and laws. */
+typedef struct
+{
+  TfSample *sample;
+  TfVerdict *verdicts;      /* one a sample row */
+  gint64 *marks;            /* local key of each row; hints negative */
+  guint n_marks, n_hints;   /* among the rows */
+  GHashTable *left_out;     /* reason code -> GUINT_TO_POINTER (count) */
+  double even_floor_gauss;  /* the study's floor; NaN when it could not be worked out */
+  guint n_other_floor;      /* rows measured with another floor than the study's */
+  GArray *hale;             /* TfHaleRow */
+  GArray *joy;              /* TfJoyFit: each cycle and hemisphere, then all */
+  double mean_tilt_deg, median_tilt_deg;
+  TfNotes *cautions;        /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
+} TfFindings;
+TfFindings *tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error);
+void tf_findings_free (TfFindings *findings);
+
+/** tf_study_row: a ledger row as a sample row. */
+void tf_study_row (const TfRow *row, TfSampleRow *out);
+/** tf_study_point: a point of the wings as a sample row (as far as it goes). */
+void tf_study_point (const TfPoint *point, TfSampleRow *out);
+/** tf_study_judge_measure: verdict of one measure under the study's divides: what the slip and `measure` show. */
+TfVerdict tf_study_judge_measure (const TfStudy *study, const TfMeasure *measure);
+
+/** tf_findings_build_json: the `laws` document of 6-commands. */
+void tf_findings_build_json (const TfFindings *findings, const TfStudy *study, JsonBuilder *builder);
+/** tf_findings_dup_words: the numbers as they would stand in a paper, in the current language. */
+char *tf_findings_dup_words (const TfFindings *findings, const TfStudy *study);
+/** tf_verdict_build_members: adds "polarity_tilt_deg", "cycle":{number, sure, reason} and "hale":{verdict, reason, expected} to the open object. */
+void tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row, JsonBuilder *builder);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfStudy, tf_study_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFindings, tf_findings_free)
+
+G_END_DECLS
