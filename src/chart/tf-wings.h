@@ -1,0 +1,50 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* The wings: the butterfly strip. Time along, latitude up, one mark a dot (size = flux, disc or ring = leading polarity, struck
+ * diamond = breaks Hale's law; hints fainter). Cycles banded and named, divides drawn, a line at the frame in view, the chosen stretch shaded.
+ * A density picture when there are more dots than pixels can tell apart.
+ */
+
+#include "tf-chart.h"
+#include "tf-divide.h"
+
+G_BEGIN_DECLS
+
+typedef struct
+{
+  double year;
+  float lat_deg, flux_mx;
+  gint8 leading;  /* 1, -1, 0 */
+  gint8 verdict;  /* TfVerdictKind */
+  gint8 hint;
+  gint64 id;      /* the caller's */
+} TfWingsDot;
+
+typedef struct
+{
+  const TfWingsDot *dots;
+  guint n;                      /* sorted by year */
+  double from_year, to_year;    /* view */
+  double lat_max_deg;           /* 45 */
+  double frame_year;            /* NaN none */
+  gint64 chosen;                /* id of the chosen dot; 0 none */
+  double pick_from, pick_to;    /* the chosen stretch of years; NaN none */
+  double pick_low, pick_high;   /* and band of latitude; NaN all */
+  const TfDivides *divides;     /* nullable */
+  gboolean plain;               /* a divide is in hand: dots plain, verdicts hidden */
+} TfWings;
+
+void tf_wings_draw (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area);
+/** tf_wings_hit: index of the nearest dot within 8 units of the point, or -1. */
+int tf_wings_hit (const TfWings *wings, TfArea area, double x, double y);
+double tf_wings_year_at (const TfWings *wings, TfArea area, double x);
+double tf_wings_lat_at (const TfWings *wings, TfArea area, double y);
+double tf_wings_x_of (const TfWings *wings, TfArea area, double year);
+/** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year when there are none. */
+void tf_wings_fit (TfWings *wings, double year);
+char *tf_wings_dup_description (const TfWings *wings);
+
+G_END_DECLS
