@@ -38,11 +38,17 @@ typedef struct
 } TfWings;
 
 void tf_wings_draw (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area);
+/** tf_wings_plot: where the dots are: @area less the labels, whose room depends on the text size of @style. */
+TfArea tf_wings_plot (const TfWings *wings, const TfChartStyle *style, TfArea area);
 /** tf_wings_hit: index of the nearest dot within 8 units of the point, or -1. */
-int tf_wings_hit (const TfWings *wings, TfArea area, double x, double y);
-double tf_wings_year_at (const TfWings *wings, TfArea area, double x);
-double tf_wings_lat_at (const TfWings *wings, TfArea area, double y);
-double tf_wings_x_of (const TfWings *wings, TfArea area, double year);
+int tf_wings_hit (const TfWings *wings, const TfChartStyle *style, TfArea area, double x, double y);
+/** tf_wings_year_at, tf_wings_lat_at: what stands at a point; goes on beyond the plot. */
+double tf_wings_year_at (const TfWings *wings, const TfChartStyle *style, TfArea area, double x);
+double tf_wings_lat_at (const TfWings *wings, const TfChartStyle *style, TfArea area, double y);
+double tf_wings_x_of (const TfWings *wings, const TfChartStyle *style, TfArea area, double year);
+double tf_wings_y_of (const TfWings *wings, const TfChartStyle *style, TfArea area, double lat_deg);
+/** tf_wings_is_dense: whether the view is drawn as a density picture. */
+gboolean tf_wings_is_dense (const TfWings *wings, const TfChartStyle *style, TfArea area);
 /** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year when there are none. */
 void tf_wings_fit (TfWings *wings, double year);
 char *tf_wings_dup_description (const TfWings *wings);
