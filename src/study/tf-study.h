@@ -73,6 +73,8 @@ void tf_findings_free (TfFindings *findings);
 
 /** tf_study_row: a ledger row as a sample row. */
 void tf_study_row (const TfRow *row, TfSampleRow *out);
+/** tf_study_measure_row: one measure as a sample row, region and origin absent. */
+void tf_study_measure_row (const TfMeasure *measure, TfSampleRow *out);
 /** tf_study_point: a point of the wings as a sample row (as far as it goes). */
 void tf_study_point (const TfPoint *point, TfSampleRow *out);
 /** tf_study_judge_measure: verdict of one measure under the study's divides: what the slip and `measure` show. */

@@ -1,0 +1,72 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-batch.h"
+
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-json.h"
+
+/* One measure, as JSON and as a few lines for a person. */
+
+void
+tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfMeasure *measure, const char *method,
+                        const TfStudy *study)
+{
+  const TfFrameInfo *info = tf_frame_get_info (frame);
+  TfSampleRow row;
+  TfVerdict verdict = tf_study_judge_measure (study, measure);
+  tf_study_measure_row (measure, &row);
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "file", path);
+  tf_json_string (builder, "time_source", info->time_source);
+  tf_json_string (builder, "method", method);
+  tf_json_string (builder, "instrument", info->instrument);
+  tf_measure_build_members (measure, builder);
+  tf_verdict_build_members (&verdict, &row, builder);
+  json_builder_end_object (builder);
+}
+
+static void
+add_pole (GString *out, const char *sign, const TfPole *pole)
+{
+  if (pole->pixels == 0)
+    g_string_append_printf (out, _ ("  %s none above the floor\n"), sign);
+  else
+    g_string_append_printf (out, _ ("  %s %.3g ± %.1g Mx at %+.2f° latitude, Carrington %.2f° (± %.2f°), %u pixels\n"), sign,
+                            pole->flux_mx, pole->flux_sigma_mx, pole->lat_deg, pole->carrington_lon_deg, pole->place_sigma_deg,
+                            pole->pixels);
+}
+
+char *
+tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
+{
+  TfSampleRow row;
+  TfVerdict verdict = tf_study_judge_measure (study, m);
+  tf_study_measure_row (m, &row);
+  g_autofree char *says = tf_verdict_dup_text (&verdict, &row, FALSE);
+  GString *out = g_string_new (NULL);
+  g_string_append_printf (out, _ ("latitude %+.2f°, CMD %+.2f°, μ %.2f, floor %.0f G (%s), noise %.1f G, field %s\n"), m->lat_deg,
+                          m->cmd_deg, m->mu, m->floor_gauss, tf_floor_kind_name (m->floor_kind), m->noise_gauss,
+                          tf_field_used_name (m->field_used));
+  add_pole (out, "+", &m->positive);
+  add_pole (out, "−", &m->negative);
+  if (m->leading_polarity != 0)
+    g_string_append_printf (out, _ ("  leading %s (%s)\n"), m->leading_polarity > 0 ? "+" : "−",
+                            m->leading_sure ? _ ("sure") : _ ("not sure"));
+  if (isfinite (m->axis_bearing_deg))
+    g_string_append_printf (out, _ ("  axis bearing %+.2f°, axis tilt %+.2f° ± %.2f° (noise %.2f, outline %.2f, floor %.2f)\n"),
+                            m->axis_bearing_deg, m->axis_tilt_deg, m->tilt_terms.total, m->tilt_terms.noise,
+                            m->tilt_terms.outline, m->tilt_terms.floor);
+  if (isfinite (m->separation_deg))
+    g_string_append_printf (out, _ ("  separation %.2f° ± %.2f° (%.0f Mm), compactness %.2f, pieces %u\n"), m->separation_deg,
+                            m->separation_sigma_deg, m->separation_mm, m->compactness, m->pieces);
+  g_string_append_printf (out, "  %s\n", says);
+  for (guint k = 0; k < tf_notes_get_n (m->cautions); k++)
+    {
+      g_autofree char *text = tf_note_dup_text (tf_notes_get (m->cautions, k), FALSE);
+      g_string_append_printf (out, _ ("  caution: %s\n"), text);
+    }
+  return g_string_free (out, FALSE);
+}

@@ -1,0 +1,124 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <stdio.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-batch.h"
+#include "tf-hint.h"
+#include "tf-json.h"
+
+/* hints: suggested outlines of each frame. */
+
+typedef struct
+{
+  TfFrameWords frame;
+  TfHintParams hint;
+  TfMeasureParams measure;
+  TfStudy *study;
+  char *method;
+} Words;
+
+static void
+build_hint (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfHint *hint, const Words *words)
+{
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "kind", hint->unipolar ? "unipolar" : "bipole");
+  tf_json_string (builder, "size", hint->measure.ephemeral ? "ephemeral" : "region");
+  json_builder_set_member_name (builder, "outline");
+  tf_outline_build_json (hint->outline, builder);
+  json_builder_set_member_name (builder, "measure");
+  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study);
+  json_builder_set_member_name (builder, "cautions");
+  tf_notes_build_json (hint->cautions, builder);
+  json_builder_end_object (builder);
+}
+
+static void
+build_hints (JsonBuilder *builder, const char *path, const TfFrame *frame, const GPtrArray *hints, const Words *words)
+{
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "file", path);
+  json_builder_set_member_name (builder, "rule");
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "name", TF_HINT_RULE);
+  json_builder_set_member_name (builder, "parameters");
+  tf_options_build_json (tf_hint_options, &words->hint, builder);
+  json_builder_end_object (builder);
+  json_builder_set_member_name (builder, "hints");
+  json_builder_begin_array (builder);
+  for (guint k = 0; k < hints->len; k++)
+    build_hint (builder, path, frame, g_ptr_array_index (hints, k), words);
+  json_builder_end_array (builder);
+  json_builder_end_object (builder);
+}
+
+static void
+print_hints (const char *path, const GPtrArray *hints, const Words *words)
+{
+  printf (ngettext ("%s: %u hint\n", "%s: %u hints\n", hints->len), path, hints->len);
+  for (guint k = 0; k < hints->len; k++)
+    {
+      const TfHint *hint = g_ptr_array_index (hints, k);
+      g_autofree char *text = tf_batch_dup_measure_text (&hint->measure, words->study);
+      printf ("%u. %s, %s", k + 1, hint->unipolar ? _ ("unipolar") : _ ("bipole"), text);
+    }
+}
+
+static gboolean
+hints_one (const char *path, const Words *words, const TfWork *work, JsonBuilder *builder)
+{
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfFrame) frame = tf_frame_open (path, &words->frame.spec, work, &error);
+  g_autoptr (GPtrArray) hints = frame != NULL ? tf_hints_find (frame, &words->hint, &words->measure, work, &error) : NULL;
+  if (hints == NULL)
+    {
+      tf_batch_say_error (error);
+      return FALSE;
+    }
+  if (builder != NULL)
+    build_hints (builder, path, frame, hints, words);
+  else
+    print_hints (path, hints, words);
+  return TRUE;
+}
+
+int
+tf_verb_hints (int argc, char **argv)
+{
+  gboolean json = FALSE;
+  Words words = { 0 };
+  const GOptionEntry entries[] = {
+    { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
+    { NULL },
+  };
+  tf_hint_params_init (&words.hint);
+  tf_measure_params_init (&words.measure);
+  GOptionContext *context = tf_batch_context ("hints");
+  g_option_context_add_main_entries (context, entries, GETTEXT_PACKAGE);
+  tf_batch_add_frame_words (context, &words.frame);
+  g_option_context_add_group (context, tf_options_new_group (tf_hint_options, &words.hint, "rule", N_ ("the rule")));
+  g_option_context_add_group (context, tf_options_new_group (tf_measure_options, &words.measure, "method", N_ ("the method")));
+  if (!tf_batch_parse (context, &argc, &argv))
+    return TF_EXIT_CALL;
+  if (argc < 2)
+    return tf_batch_usage ("hints", _ ("Name at least one frame."));
+
+  g_autoptr (TfWork) work = tf_batch_work_new (0);
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  g_autofree char *method = tf_options_dup_canonical (tf_measure_options, &words.measure, TF_MEASURE_METHOD);
+  g_autoptr (JsonBuilder) builder = json ? json_builder_new () : NULL;
+  words.study = study;
+  words.method = method;
+  int failed = 0;
+  if (json)
+    json_builder_begin_array (builder);
+  for (int k = 1; k < argc && !tf_cancel_is_raised (work->cancel); k++)
+    failed += !hints_one (argv[k], &words, work, builder);
+  if (json)
+    {
+      json_builder_end_array (builder);
+      tf_batch_print_json (builder);
+    }
+  return failed == 0 ? TF_EXIT_DONE : failed == argc - 1 ? TF_EXIT_NOTHING : TF_EXIT_PART;
+}

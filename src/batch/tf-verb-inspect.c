@@ -1,0 +1,200 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <math.h>
+#include <stdio.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-batch.h"
+#include "tf-json.h"
+#include "tf-number.h"
+
+/* inspect: what a frame is. A frame refused is an answer; only a file that cannot be read is a failure. */
+
+static void
+build_observer (JsonBuilder *builder, const TfObserver *observer)
+{
+  json_builder_set_member_name (builder, "observer");
+  json_builder_begin_object (builder);
+  tf_json_number (builder, "distance_m", observer->distance_m);
+  tf_json_number (builder, "b0_deg", observer->b0_deg);
+  tf_json_number (builder, "stonyhurst_lon_deg", observer->stonyhurst_lon_deg);
+  tf_json_number (builder, "carrington_lon_deg", observer->carrington_lon_deg);
+  tf_json_string (builder, "source", tf_observer_source_name (observer->source));
+  json_builder_end_object (builder);
+}
+
+/* @frame is NULL when only the header could be used. */
+static void
+build_noise (JsonBuilder *builder, const TfFrame *frame)
+{
+  guint n = 0;
+  const TfNoiseRing *rings = frame != NULL ? tf_frame_get_noise (frame, &n) : NULL;
+  gboolean map = frame != NULL && tf_geometry_is_map (tf_frame_get_geometry (frame));
+  tf_json_number (builder, "noise_gauss", frame != NULL ? tf_frame_noise_at (frame, map ? 0.0 : 1.0) : NAN);
+  json_builder_set_member_name (builder, "noise_rings");
+  json_builder_begin_array (builder);
+  for (guint k = 0; k < n; k++)
+    tf_json_numbers (builder, NULL, (const double[]){ rings[k].mu, rings[k].gauss }, 2);
+  json_builder_end_array (builder);
+}
+
+static void
+build_geometry (JsonBuilder *builder, const TfFrameInfo *info)
+{
+  const TfGeometry *g = &info->geometry;
+  gboolean known = g->projection != TF_PROJECTION_NONE;
+  tf_json_number (builder, "radius_mm", known ? g->radius_mm : NAN);
+  tf_json_number (builder, "radius_arcsec", known ? tf_geometry_radius_arcsec (g) : NAN);
+  tf_json_number (builder, "scale_arcsec", known ? tf_geometry_scale_arcsec (g) : NAN);
+  tf_json_number (builder, "north_angle_deg", known ? tf_geometry_north_angle (g) : NAN);
+  tf_json_string (builder, "projection", known ? tf_projection_name (g->projection) : NULL);
+}
+
+static void
+build_info (JsonBuilder *builder, const char *path, int hdu, const TfFrameInfo *info, const TfFrame *frame)
+{
+  g_autofree char *time = tf_time_dup_iso (info->time, 3);
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "file", path);
+  tf_json_int (builder, "hdu", hdu);
+  tf_json_int (builder, "width", info->geometry.width);
+  tf_json_int (builder, "height", info->geometry.height);
+  tf_json_string (builder, "kind", tf_kind_name (info->kind));
+  tf_json_string (builder, "role", tf_role_name (info->role));
+  tf_json_bool (builder, "ok", info->role == TF_ROLE_FIELD);
+  json_builder_set_member_name (builder, "refusal");
+  tf_note_build_json (info->refusal, builder);
+  tf_json_string (builder, "time", time);
+  tf_json_string (builder, "time_source", info->time_source);
+  tf_json_number (builder, "time_span", info->time_span_s);
+  build_observer (builder, &info->geometry.observer);
+  tf_json_string (builder, "instrument", info->instrument);
+  tf_json_null (builder, "scale");
+  build_geometry (builder, info);
+  tf_json_string (builder, "unit", info->unit);
+  tf_json_string (builder, "field", tf_field_name (info->field));
+  build_noise (builder, frame);
+  json_builder_set_member_name (builder, "repairs");
+  tf_notes_build_json (info->repairs, builder);
+  json_builder_set_member_name (builder, "cautions");
+  tf_notes_build_json (frame != NULL ? tf_frame_get_cautions (frame) : info->cautions, builder);
+  json_builder_end_object (builder);
+}
+
+static void
+build_failure (JsonBuilder *builder, const char *path, const GError *error)
+{
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "file", path);
+  tf_json_bool (builder, "ok", FALSE);
+  json_builder_set_member_name (builder, "refusal");
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "code", "unreadable");
+  tf_json_string (builder, "text", error->message);
+  json_builder_end_object (builder);
+  json_builder_end_object (builder);
+}
+
+static void
+print_notes (const char *heading, const TfNotes *notes)
+{
+  for (guint k = 0; k < tf_notes_get_n (notes); k++)
+    {
+      g_autofree char *text = tf_note_dup_text (tf_notes_get (notes, k), FALSE);
+      printf ("  %s: %s\n", heading, text);
+    }
+}
+
+static void
+print_disk (const TfGeometry *g)
+{
+  const TfObserver *o = &g->observer;
+  printf (_ ("  observer: B0 %+.3f°, Stonyhurst %+.3f°, Carrington %.3f°, %.4f au (%s)\n"), o->b0_deg, o->stonyhurst_lon_deg,
+          o->carrington_lon_deg, o->distance_m / TF_AU_M, tf_observer_source_name (o->source));
+  printf (_ ("  disk: radius %.2f″ = %.1f pixels, %.4f″ a pixel, solar north %+.2f° from up\n"), tf_geometry_radius_arcsec (g),
+          tf_geometry_disk_radius (g), tf_geometry_scale_arcsec (g), tf_geometry_north_angle (g));
+}
+
+static void
+print_info (const char *path, const TfFrameInfo *info, const TfFrame *frame)
+{
+  const TfGeometry *g = &info->geometry;
+  g_autofree char *time = tf_time_dup_iso (info->time, 0);
+  printf ("%s\n", path);
+  printf (_ ("  %s, %s, %u × %u pixels, %s\n"), tf_kind_name (info->kind), tf_role_name (info->role), g->width, g->height,
+          info->instrument);
+  printf (_ ("  time: %s (from %s)\n"), time != NULL ? time : _ ("unknown"), info->time_source);
+  if (info->refusal != NULL)
+    {
+      g_autofree char *why = tf_note_dup_text (info->refusal, FALSE);
+      printf (_ ("  refused: %s\n"), why);
+    }
+  if (g->projection == TF_PROJECTION_TAN)
+    print_disk (g);
+  if (frame != NULL)
+    {
+      gboolean map = tf_geometry_is_map (g);
+      printf (_ ("  field: %s, in %s; noise %.1f G %s\n"), tf_field_name (info->field), *info->unit != '\0' ? info->unit : "?",
+              tf_frame_noise_at (frame, map ? 0.0 : 1.0), map ? _ ("at the equator") : _ ("at disk centre"));
+    }
+  print_notes (_ ("repair"), info->repairs);
+  print_notes (_ ("caution"), frame != NULL ? tf_frame_get_cautions (frame) : info->cautions);
+}
+
+/* FALSE when the file could not be read at all. */
+static gboolean
+inspect_one (const char *path, const TfFrameSpec *spec, const TfWork *work, JsonBuilder *builder)
+{
+  g_autoptr (GError) error = NULL;
+  int hdu = 0;
+  g_autoptr (TfFrameInfo) info = tf_frame_look (path, spec, &hdu, &error);
+  g_autoptr (TfFrame) frame = NULL;
+  if (info != NULL && info->role == TF_ROLE_FIELD)
+    frame = tf_frame_open (path, spec, work, &error);
+  if (error != NULL && !g_error_matches (error, TF_FRAME_ERROR, TF_FRAME_ERROR_REFUSED))
+    {
+      if (builder != NULL)
+        build_failure (builder, path, error);
+      tf_batch_say_error (error);
+      return FALSE;
+    }
+  const TfFrameInfo *shown = frame != NULL ? tf_frame_get_info (frame) : info;
+  if (builder != NULL)
+    build_info (builder, path, hdu, shown, frame);
+  else
+    print_info (path, shown, frame);
+  return TRUE;
+}
+
+int
+tf_verb_inspect (int argc, char **argv)
+{
+  gboolean json = FALSE;
+  TfFrameWords words;
+  const GOptionEntry entries[] = {
+    { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
+    { NULL },
+  };
+  GOptionContext *context = tf_batch_context ("inspect");
+  g_option_context_add_main_entries (context, entries, GETTEXT_PACKAGE);
+  tf_batch_add_frame_words (context, &words);
+  if (!tf_batch_parse (context, &argc, &argv))
+    return TF_EXIT_CALL;
+  if (argc < 2)
+    return tf_batch_usage ("inspect", _ ("Name at least one frame."));
+
+  g_autoptr (TfWork) work = tf_batch_work_new (0);
+  g_autoptr (JsonBuilder) builder = json ? json_builder_new () : NULL;
+  int failed = 0;
+  if (json)
+    json_builder_begin_array (builder);
+  for (int k = 1; k < argc && !tf_cancel_is_raised (work->cancel); k++)
+    failed += !inspect_one (argv[k], &words.spec, work, builder);
+  if (json)
+    {
+      json_builder_end_array (builder);
+      tf_batch_print_json (builder);
+    }
+  return failed == 0 ? TF_EXIT_DONE : failed == argc - 1 ? TF_EXIT_NOTHING : TF_EXIT_PART;
+}
