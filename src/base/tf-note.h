@@ -84,5 +84,6 @@ void tf_notes_build_json (const TfNotes *notes, JsonBuilder *builder);
 void tf_note_build_json (const TfNote *note, JsonBuilder *builder);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfNote, tf_note_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfNotes, g_ptr_array_unref)
 
 G_END_DECLS

@@ -6,6 +6,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-batch.h"
+#include "tf-constants.h"
 #include "tf-json.h"
 #include "tf-number.h"
 
