@@ -1,0 +1,16 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "test-sun.h"
+
+#include <glib.h>
+
+int
+main (int argc, char **argv)
+{
+  g_test_init (&argc, &argv, NULL);
+  add_time_tests ();
+  add_observer_tests ();
+  add_geometry_tests ();
+  return g_test_run ();
+}
