@@ -53,6 +53,14 @@ typedef struct
 TfStudy *tf_study_new_default (void);
 void tf_study_free (TfStudy *study);
 
+/** TfWhatIf: share that breaks and Joy slope under one other choice. */
+typedef struct
+{
+  const char *name; /* "as-chosen", "cycle-by-date-only", "cycle-by-latitude-alone", "equator-zone-5", "least-squares", ... */
+  guint n, breaks;
+  double share, slope;
+} TfWhatIf;
+
 /** TfFindings: a sample with its verdicts and laws. */
 typedef struct
 {
@@ -65,6 +73,8 @@ typedef struct
   guint n_other_floor;      /* rows measured with another floor than the study's */
   GArray *hale;             /* TfHaleRow */
   GArray *joy;              /* TfJoyFit: each cycle and hemisphere, then all */
+  GArray *what_if;          /* TfWhatIf */
+  guint simulated;          /* rows from invented frames */
   double mean_tilt_deg, median_tilt_deg;
   TfNotes *cautions;        /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
 } TfFindings;

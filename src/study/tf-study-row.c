@@ -1,0 +1,158 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <math.h>
+#include <string.h>
+
+#include "tf-study-private.h"
+
+/* Ledger rows, measures and points as the rows laws are tested on. */
+
+enum
+{
+  HINT_CLUSTER = 1u << 31 /* a hint is a region of its own, apart from all numbered ones */
+};
+
+static gint8
+witnesses_differ (const int witnesses[3])
+{
+  int seen = 0;
+  for (int k = 0; k < 3; k++)
+    {
+      if (witnesses[k] == TF_WITNESS_ABSENT || witnesses[k] == 0)
+        continue;
+      if (seen != 0 && witnesses[k] != seen)
+        return 1;
+      seen = witnesses[k];
+    }
+  return 0;
+}
+
+void
+tf_study_measure_row (const TfMeasure *m, TfSampleRow *out)
+{
+  gboolean plus = m->leading_polarity > 0;
+  const TfPole *lead = plus ? &m->positive : &m->negative, *follow = plus ? &m->negative : &m->positive;
+  gboolean two = m->leading_polarity != 0;
+  tf_sample_row_init (out);
+  out->time = m->time;
+  out->lat_deg = m->lat_deg;
+  out->leading_lat_deg = two ? lead->lat_deg : NAN;
+  out->following_lat_deg = two ? follow->lat_deg : NAN;
+  out->cmd_deg = m->cmd_deg;
+  out->mu = m->mu;
+  out->axis_tilt_deg = m->axis_tilt_deg;
+  out->axis_bearing_deg = m->axis_bearing_deg;
+  out->tilt_sigma_deg = m->tilt_terms.total;
+  out->separation_deg = m->separation_deg;
+  out->separation_sigma_deg = m->separation_sigma_deg;
+  out->flux_mx = m->flux_unsigned_mx;
+  out->imbalance = m->imbalance;
+  out->compactness = m->compactness;
+  out->axial_dipole_gauss = m->axial_dipole_gauss;
+  out->leading_polarity = m->leading_polarity;
+  out->leading_sure = m->leading_sure != 0;
+  out->witnesses_differ = witnesses_differ (m->witnesses);
+  out->straddles = two && lead->lat_deg * follow->lat_deg < 0;
+  out->size = m->ephemeral != 0;
+}
+
+static TfOrigin
+origin_of (const TfRow *row)
+{
+  static const struct
+  {
+    const char *name;
+    TfOrigin origin;
+  } names[] = { { "kept as hinted", TF_ORIGIN_KEPT }, { "changed", TF_ORIGIN_CHANGED }, { "drawn new", TF_ORIGIN_DRAWN },
+                { "outside", TF_ORIGIN_OUTSIDE } };
+  for (guint k = 0; k < G_N_ELEMENTS (names); k++)
+    if (g_strcmp0 (row->origin, names[k].name) == 0)
+      return names[k].origin;
+  return TF_ORIGIN_HINT;
+}
+
+void
+tf_study_row (const TfRow *row, TfSampleRow *out)
+{
+  tf_study_measure_row (&row->measure, out);
+  out->origin = origin_of (row);
+  out->region = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->region_key;
+  out->passage = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->mark;
+}
+
+void
+tf_study_point (const TfPoint *point, TfSampleRow *out)
+{
+  tf_sample_row_init (out);
+  out->time = point->time;
+  out->lat_deg = point->lat_deg;
+  out->cmd_deg = point->cmd_deg;
+  out->mu = point->mu;
+  out->axis_tilt_deg = point->tilt_deg;
+  out->separation_deg = point->separation_deg;
+  out->flux_mx = point->flux_mx;
+  out->imbalance = point->imbalance;
+  out->leading_polarity = point->leading;
+  out->leading_sure = point->leading_sure;
+  out->witnesses_differ = point->witnesses_differ;
+  out->straddles = point->straddles;
+  out->origin = point->hint ? TF_ORIGIN_HINT : TF_ORIGIN_KEPT;
+  out->region = point->hint ? HINT_CLUSTER + (guint32)point->mark : point->region;
+}
+
+TfVerdict
+tf_study_judge_measure (const TfStudy *study, const TfMeasure *measure)
+{
+  g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
+  TfSampleRow row;
+  tf_study_measure_row (measure, &row);
+  return tf_verdict_judge (&row, divides, &study->verdict);
+}
+
+/* -- the even floor ------------------------------------------------------------------------ */
+
+gboolean
+tf_study_has_floor (const TfRow *row, double gauss)
+{
+  return row->measure.floor_kind == TF_FLOOR_EVEN && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
+}
+
+/* 3 sigma on the field used: a radial product and a map need no 1/mu. */
+static double
+frame_floor (const TfFrameRow *frame)
+{
+  gboolean as_is = frame->info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&frame->info->geometry);
+  return 3.0 * frame->noise_gauss / (as_is ? 1.0 : 0.5);
+}
+
+double
+tf_study_even_floor (TfLedger *ledger, GError **error)
+{
+  g_autoptr (GPtrArray) frames = tf_ledger_frames (ledger, error);
+  if (frames == NULL)
+    return NAN;
+  g_autoptr (GHashTable) by_instrument
+      = g_hash_table_new_full (g_str_hash, g_str_equal, NULL, (GDestroyNotify)g_array_unref);
+  for (guint k = 0; k < frames->len; k++)
+    {
+      const TfFrameRow *frame = g_ptr_array_index (frames, k);
+      double floor = frame_floor (frame);
+      if (!(floor > 0))
+        continue;
+      GArray *floors = g_hash_table_lookup (by_instrument, frame->info->instrument);
+      if (floors == NULL)
+        {
+          floors = g_array_new (FALSE, FALSE, sizeof (double));
+          g_hash_table_insert (by_instrument, frame->info->instrument, floors);
+        }
+      g_array_append_val (floors, floor);
+    }
+  GHashTableIter iter;
+  gpointer floors;
+  double greatest = NAN;
+  g_hash_table_iter_init (&iter, by_instrument);
+  while (g_hash_table_iter_next (&iter, NULL, &floors))
+    greatest = fmax (greatest, tf_median ((const double *)((GArray *)floors)->data, ((GArray *)floors)->len));
+  return greatest;
+}

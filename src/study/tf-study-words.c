@@ -1,0 +1,80 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-study-private.h"
+
+/* The numbers as they would stand in a paper. Whole sentences, so that a translator can turn them. */
+
+static const TfHaleRow *
+all_cycles (const TfFindings *findings)
+{
+  for (guint k = 0; k < findings->hale->len; k++)
+    {
+      const TfHaleRow *row = &g_array_index (findings->hale, TfHaleRow, k);
+      if (row->cycle == 0 && row->hemisphere == 0)
+        return row;
+    }
+  return NULL;
+}
+
+static const TfJoyFit *
+all_tilts (const TfFindings *findings)
+{
+  for (guint k = 0; k < findings->joy->len; k++)
+    {
+      const TfJoyFit *fit = &g_array_index (findings->joy, TfJoyFit, k);
+      if (fit->cycle == 0 && fit->hemisphere == 0)
+        return fit;
+    }
+  return NULL;
+}
+
+static void
+add_hale (GString *out, const TfFindings *findings, const TfStudy *study)
+{
+  const TfHaleRow *r = all_cycles (findings);
+  if (r == NULL || r->n == 0)
+    {
+      g_string_append (out, _ ("No region of the sample has a verdict under Hale's law. "));
+      return;
+    }
+  g_string_append_printf (out,
+                          _ ("Of %u picks (%u regions) with a verdict, %u (%.1f %%, %.0f %%: %.1f–%.1f %%) break Hale's law; %u "
+                             "more cannot be said (at least %.1f, at most %.1f %%). "),
+                          r->n, r->regions, r->breaks, 100 * r->share, 100 * study->hale.level, 100 * r->clopper_pearson.low,
+                          100 * r->clopper_pearson.high, r->cannot_say, 100 * r->bounds.low, 100 * r->bounds.high);
+  if (isfinite (r->expected_false))
+    g_string_append_printf (out, _ ("Errors of place alone would make %.2f %% seem to break it. "), 100 * r->expected_false);
+}
+
+static void
+add_joy (GString *out, const TfFindings *findings, const TfStudy *study)
+{
+  const TfJoyFit *f = all_tilts (findings);
+  if (f == NULL || f->n < 3)
+    {
+      g_string_append (out, _ ("There are too few tilts for Joy's law. "));
+      return;
+    }
+  const char *form = tf_joy_form_names[study->joy.form], *estimator = tf_joy_estimator_names[study->joy.estimator];
+  g_string_append_printf (out,
+                          _ ("Joy's law (%s, %s, %u picks): slope %+.3f %s (%.0f %%: %+.3f to %+.3f, clustered by region), scatter "
+                             "%.1f°. "),
+                          form, estimator, f->n, f->slope, tf_joy_unit ((TfJoyForm)study->joy.form), 100 * study->joy.level,
+                          f->slope_ci.low, f->slope_ci.high, f->scatter_deg);
+}
+
+char *
+tf_findings_dup_words (const TfFindings *findings, const TfStudy *study)
+{
+  GString *out = g_string_new (NULL);
+  g_string_append_printf (out, _ ("Sample: %u marks and %u hints, |CMD| ≤ %.0f°, even floor %.1f G. "), findings->n_marks,
+                          findings->n_hints, study->sieve.cmd_max_deg, findings->even_floor_gauss);
+  add_hale (out, findings, study);
+  add_joy (out, findings, study);
+  g_string_truncate (out, out->len - 1);
+  return g_string_free (out, FALSE);
+}
