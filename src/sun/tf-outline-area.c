@@ -15,6 +15,8 @@
 static const double nodes[4] = { 0.183434642495650, 0.525532409916329, 0.796666477413627, 0.960289856497536 };
 static const double weights[4] = { 0.362683783378362, 0.313706645877887, 0.222381034453374, 0.101228536290376 };
 
+#define MOST_HEIGHT 0.25 /* of v: a taller slab is summed in pieces */
+
 enum
 {
   MOST_EDGES = 2000 /* above it, meeting edges are not looked for: their error is then small */
@@ -113,6 +115,19 @@ line_area (Line *line, double v)
   return sum;
 }
 
+static double
+slab_area (Line *line, double low, double high)
+{
+  double sum = 0.0, pieces = ceil ((high - low) / MOST_HEIGHT), half = 0.5 * (high - low) / pieces;
+  for (int piece = 0; piece < (int)pieces && half > 0.0; piece++)
+    {
+      double middle = low + (2.0 * piece + 1.0) * half;
+      for (int j = 0; j < 4; j++)
+        sum += half * weights[j] * (line_area (line, middle - half * nodes[j]) + line_area (line, middle + half * nodes[j]));
+    }
+  return sum;
+}
+
 double
 tf_outline_area (const TfOutline *outline, double radius_mm)
 {
@@ -126,11 +141,6 @@ tf_outline_area (const TfOutline *outline, double radius_mm)
   add_meetings (edges, heights);
   g_array_sort (heights, compare);
   for (guint k = 0; k + 1 < heights->len; k++)
-    {
-      double low = g_array_index (heights, double, k), high = g_array_index (heights, double, k + 1);
-      double middle = 0.5 * (low + high), half = 0.5 * (high - low);
-      for (int j = 0; j < 4 && half > 0.0; j++)
-        sum += half * weights[j] * (line_area (&line, middle - half * nodes[j]) + line_area (&line, middle + half * nodes[j]));
-    }
+    sum += slab_area (&line, g_array_index (heights, double, k), g_array_index (heights, double, k + 1));
   return sum * radius_mm * radius_mm;
 }

@@ -204,7 +204,7 @@ TfOutline *
 tf_outline_from_text (const char *json, GError **error)
 {
   g_autoptr (GError) parse = NULL;
-  g_autoptr (JsonNode) root = json_from_string (json, &parse);
+  g_autoptr (JsonNode) root = json_from_string (json != NULL ? json : "", &parse);
   if (parse != NULL)
     {
       g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_FORM, _ ("The outline is not JSON: %s"), parse->message);

@@ -12,5 +12,6 @@ main (int argc, char **argv)
   add_time_tests ();
   add_observer_tests ();
   add_geometry_tests ();
+  add_outline_tests ();
   return g_test_run ();
 }
