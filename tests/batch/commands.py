@@ -1,0 +1,307 @@
+"""commands.py TILTFIELD_RUN SOURCE: the headless program from outside, as other people's scripts see it. Prints TAP.
+
+The keys are those of the command reference that scripts rely on; what the numbers should be is checked in tests/outside.
+"""
+import csv
+import glob
+import json
+import math
+import os
+import shutil
+import signal
+import subprocess
+import sys
+import tempfile
+import time
+
+RUN, TOP = sys.argv[1], sys.argv[2]
+FRAMES = os.path.join(TOP, "data-demo", "frames")
+REAL = os.environ.get("TF_SHARED_DATA", os.path.join(TOP, "..", "shared", "data"))
+work = tempfile.mkdtemp(prefix="tiltfield-batch-")
+os.environ["XDG_STATE_HOME"] = os.path.join(work, "state")
+number = failed = 0
+
+INSPECT = """file hdu width height kind role ok refusal time time_source time_span observer instrument scale radius_mm
+radius_arcsec scale_arcsec north_angle_deg projection unit field noise_gauss noise_rings repairs cautions""".split()
+OBSERVER = "distance_m b0_deg stonyhurst_lon_deg carrington_lon_deg source".split()
+WHERE = "x y stonyhurst_lon_deg carrington_lon_deg lat_deg cmd_deg mu field_gauss".split()
+MEASURE = """file time time_source method instrument scale floor_gauss floor_kind noise_gauss noise_flux_mx field_used positive
+negative leading following axis_bearing_deg axis_tilt_deg polarity_tilt_deg tilt_sigma_deg tilt_terms separation_deg
+separation_sigma_deg separation_mm compactness pieces flux_unsigned_mx imbalance mu cmd_deg size cycle hale axial_dipole_gauss
+complexity cautions""".split()
+POLE = """flux_mx flux_sigma_mx lon_deg carrington_lon_deg lat_deg place_sigma_deg pixels magnetic_area_msh""".split()
+LAWS = "study sample hale joy mean_tilt_deg median_tilt_deg cycle_choice what_if cautions".split()
+HALE = """cycle hemisphere n regions keeps breaks cannot_say share_breaks bounds expected_false wilson clopper_pearson cluster
+level""".split()
+JOY = "cycle hemisphere form estimator n slope slope_ci intercept intercept_ci scatter_deg level unit".split()
+COLUMNS = """region passage mark origin label frame frame_checksum method program_version field_used size time time_source kind
+instrument scale person vantage leading_lat_deg leading_carrington_lon_deg following_lat_deg following_carrington_lon_deg lat_deg
+cmd_deg stonyhurst_lon_deg carrington_lon_deg mu axis_bearing_deg axis_tilt_deg polarity_tilt_deg tilt_sigma_deg separation_deg
+separation_sigma_deg separation_mm compactness pieces leading_polarity leading_sure flux_unsigned_mx flux_positive_mx
+flux_negative_mx imbalance magnetic_area_msh cycle cycle_sure hale hale_reason class axial_dipole_gauss floor_gauss floor_kind
+cautions""".split()
+
+
+def test(sentence):
+    """Runs a function as one TAP line; an assertion or an exception fails it."""
+    def wrap(function):
+        global number, failed
+        number += 1
+        try:
+            why = function()
+        except Exception as error:  # every failure must become a line
+            failed += 1
+            print(f"not ok {number} - {sentence}\n#   {type(error).__name__}: {error}", flush=True)
+        else:
+            print(f"ok {number} - {sentence}" + (f" # SKIP {why}" if why else ""), flush=True)
+        return function
+    return wrap
+
+
+def call(*words, code=0, env=None, text=True):
+    done = subprocess.run([RUN, *words], stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=text, timeout=120,
+                          env=dict(os.environ, **(env or {})))
+    assert done.returncode == code, f"{' '.join(words)}: exit {done.returncode}, expected {code}: {done.stderr[-400:]}"
+    return done
+
+
+def document(*words, code=0, env=None):
+    def no_constant(name):
+        raise ValueError(f"{name} in JSON")
+    return json.loads(call(*words, code=code, env=env).stdout, parse_constant=no_constant)
+
+
+def has(found, keys):
+    missing = [key for key in keys if key not in found]
+    assert not missing, f"missing {missing}"
+
+
+def demo(name="*"):
+    frames = sorted(glob.glob(os.path.join(FRAMES, name + ".fits")))
+    assert frames, "no demo frames"
+    return frames
+
+
+def first_disk():
+    for path in demo():
+        if document("inspect", "--json", path)[0]["kind"] == "disk":
+            return path
+    raise AssertionError("no disk among the demo frames")
+
+
+@test("with no verb it lists the verbs and exits 2; --help exits 0; every verb has help with an example")
+def _():
+    verbs = call(code=2).stderr
+    assert "inspect" in verbs and "laws" in verbs
+    call("--help")
+    for verb in ("inspect", "where", "measure", "hints", "fill", "laws", "export", "check", "simulate"):
+        assert f"tiltfield-run {verb}" in call(verb, "--help").stdout, verb
+
+
+@test("wrong words exit 2 with one line that names the help")
+def _():
+    for words in (["inspect"], ["measure", "a.fits"], ["fill", "x.ledger"], ["laws"], ["export", "a"], ["nonsense"],
+                  ["measure", "a.fits", "--cap", "1,2"], ["measure", "--no-such-option", "a.fits"]):
+        call(*words, code=2 if words != ["measure", "a.fits", "--cap", "1,2"] else 3)
+
+
+@test("inspect gives every key for every demo frame, and a refused frame is an answer")
+def _():
+    found = document("inspect", "--json", *demo())
+    assert len(found) == len(demo())
+    for frame in found:
+        has(frame, INSPECT)
+        has(frame["observer"], OBSERVER)
+        assert frame["kind"] in ("disk", "cut-out", "map", "model map") or not frame["ok"]
+        assert frame["role"] in ("field", "intensity", "refused")
+        assert frame["ok"] == (frame["role"] == "field")
+        if frame["refusal"]:
+            has(frame["refusal"], ["code", "text"])
+        for note in frame["repairs"] + frame["cautions"]:
+            has(note, ["code", "text"])
+            assert note["code"] == note["code"].lower() and " " not in note["code"]
+
+
+@test("an unreadable file gives one line, exit 3 alone and 1 among others")
+def _():
+    bad = os.path.join(work, "bad.fits")
+    with open(bad, "wb") as file:
+        file.write(b"this is no FITS file")
+    line = call("inspect", bad, code=3).stderr.strip()
+    assert line.count("\n") == 0 and "bad.fits" in line, line
+    call("inspect", bad, demo()[0], code=1)
+    call("inspect", os.path.join(work, "not-there.fits"), code=3)
+
+
+@test("where and its inverse agree, off the disk is null, and map columns have no mu")
+def _():
+    path = first_disk()
+    size = document("inspect", "--json", path)[0]["width"]
+    there = document("where", "--json", path, f"{size/2+20},{size/2-30}", "1,1")
+    for spot in there:
+        has(spot, WHERE)
+    assert there[1]["lat_deg"] is None and there[1]["mu"] is None
+    back = document("where", "--json", path, "--sun", f"{there[0]['stonyhurst_lon_deg']},{there[0]['lat_deg']}")
+    assert abs(back[0]["x"] - there[0]["x"]) < 1e-6 and abs(back[0]["y"] - there[0]["y"]) < 1e-6
+    again = document("where", "--json", "--carrington", path, "--sun", f"{there[0]['carrington_lon_deg']},{there[0]['lat_deg']}")
+    assert abs(again[0]["x"] - there[0]["x"]) < 1e-6
+
+
+@test("hints gives outlines that measure --outline reads back to the same numbers")
+def _():
+    path = first_disk()
+    found = document("hints", "--json", path)[0]
+    has(found, ["file", "rule", "hints"])
+    has(found["rule"], ["parameters"])
+    assert found["hints"], "no hint on a demo disk"
+    for hint in found["hints"]:
+        has(hint, ["kind", "size", "outline", "measure"])
+        has(hint["measure"], MEASURE)
+        has(hint["outline"], ["frame", "time", "rings", "left_out", "pinned"])
+    first = found["hints"][0]
+    outline = os.path.join(work, "outline.json")
+    with open(outline, "w", encoding="utf-8") as file:
+        json.dump(first["outline"], file)
+    again = document("measure", "--json", path, "--outline", outline)
+    for key in ("flux_unsigned_mx", "separation_deg", "axis_tilt_deg", "floor_gauss"):
+        assert math.isclose(again[key], first["measure"][key], rel_tol=1e-6, abs_tol=1e-6), key
+
+
+@test("measure gives every key, by cap and by both floors, and an empty place is one sentence")
+def _():
+    path = first_disk()
+    place = document("hints", "--json", path)[0]["hints"][0]["measure"]
+    cap = f"--cap={place['leading']['lon_deg']},{place['leading']['lat_deg']},8"
+    for floors in ([], ["--floor", "60"], ["--even-floor", "80"]):
+        found = document("measure", "--json", path, cap, *floors)
+        has(found, MEASURE)
+        has(found["positive"], POLE)
+        has(found["negative"], POLE)
+        has(found["leading"], ["polarity", "sure", "witnesses", "lon_deg", "lat_deg"])
+        has(found["tilt_terms"], ["noise", "outline", "floor"])
+        has(found["cycle"], ["number", "sure", "reason"])
+        has(found["hale"], ["verdict", "reason", "expected"])
+        assert len(found["leading"]["witnesses"]) == 3
+        assert found["hale"]["verdict"] in ("keeps", "breaks", "cannot say")
+        assert found["floor_kind"] == ("even" if floors and floors[0] == "--even-floor" else "local")
+    assert found["floor_gauss"] == 80
+    call("measure", path, "--cap", "170,0,5", code=3)
+
+
+@test("fill skips what is there, goes on past bad files, and check finds nothing wrong")
+def _():
+    ledger = os.path.join(work, "one.ledger")
+    bad = os.path.join(work, "bad.fits")
+    call("fill", ledger, FRAMES, bad, code=1)
+    before = call("export", ledger, os.path.join(work, "a.csv"), "--with-hints")
+    again = call("fill", ledger, FRAMES)
+    assert " 0 frames added" in again.stderr or "0 frames added" in again.stderr, again.stderr
+    call("check", ledger)
+    found = document("check", "--json", ledger)
+    assert found["ok"] is True and found["findings"] == [] and before
+
+
+@test("two parts of a fill hold together what one fill holds")
+def _():
+    def rows(*ledgers):
+        found = []
+        for ledger in ledgers:
+            out = ledger + ".csv"
+            call("export", ledger, out, "--with-hints")
+            with open(out, newline="", encoding="utf-8") as file:
+                found += [row["mark"] for row in csv.DictReader(line for line in file if not line.startswith("#"))]
+        return sorted(found)
+    parts = [os.path.join(work, f"part{k}.ledger") for k in (1, 2)]
+    for k, ledger in enumerate(parts, 1):
+        call("fill", ledger, FRAMES, "--part", f"{k}/2")
+    assert rows(*parts) == rows(os.path.join(work, "one.ledger"))
+
+
+@test("a fill stopped by Ctrl-C can be taken up again and ends the same")
+def _():
+    ledger = os.path.join(work, "stopped.ledger")
+    run = subprocess.Popen([RUN, "fill", ledger, FRAMES, "--workers", "1"], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
+    deadline = time.monotonic() + 10
+    while not os.path.exists(ledger) and time.monotonic() < deadline and run.poll() is None:
+        time.sleep(0.01)
+    run.send_signal(signal.SIGINT)
+    run.wait(timeout=60)
+    call("fill", ledger, FRAMES)
+    call("check", ledger)
+    outs = []
+    for path in (ledger, os.path.join(work, "one.ledger")):
+        call("export", path, os.path.join(work, "s.csv"), "--with-hints")
+        with open(os.path.join(work, "s.csv"), newline="", encoding="utf-8") as file:
+            outs.append(sorted(row["mark"] for row in csv.DictReader(line for line in file if not line.startswith("#"))))
+    assert outs[0] == outs[1]
+
+
+@test("laws gives every key, counts hints apart, and without marks says what to do")
+def _():
+    ledger = os.path.join(work, "one.ledger")
+    line = call("laws", ledger, code=3).stderr
+    assert "--with-hints" in line
+    found = document("laws", "--json", "--with-hints", ledger)
+    has(found, LAWS)
+    has(found["sample"], ["rule", "regions", "passages", "marks", "hints", "left_out"])
+    assert found["sample"]["marks"] == 0 and found["sample"]["hints"] > 0
+    for row in found["hale"]:
+        has(row, HALE)
+        assert row["hemisphere"] in ("N", "S", "both")
+        assert row["n"] == row["keeps"] + row["breaks"]
+    for row in found["joy"]:
+        has(row, JOY)
+    over_all = [row for row in found["hale"] if row["cycle"] is None and row["hemisphere"] == "both"]
+    assert len(over_all) == 1 and over_all[0]["breaks"] >= 1, "the demo sun has an anti-Hale region"
+    assert any(note["code"] == "every-mark-is-its-own-passage" for note in found["cautions"])
+    assert "Hale's law" in call("laws", "--with-hints", ledger).stdout
+
+
+@test("export writes the four formats with every column in order, and refuses an ending it does not know")
+def _():
+    ledger = os.path.join(work, "one.ledger")
+    for ending in ("csv", "vot", "fits", "json"):
+        call("export", ledger, os.path.join(work, "out." + ending), "--with-hints")
+    with open(os.path.join(work, "out.csv"), newline="", encoding="utf-8") as file:
+        lines = [line for line in file if not line.startswith("#")]
+    header = next(csv.reader(lines[:1]))
+    assert header[: len(COLUMNS)] == COLUMNS, [pair for pair in zip(header, COLUMNS) if pair[0] != pair[1]][:3]
+    call("export", ledger, os.path.join(work, "out.xyz"), "--with-hints", code=2)
+    call("export", ledger, os.path.join(work, "no-such-folder", "out.csv"), "--with-hints", code=3)
+
+
+@test("the same answers in a locale with a decimal comma")
+def _():
+    locales = subprocess.run(["locale", "-a"], stdout=subprocess.PIPE, text=True).stdout.split()
+    comma = [name for name in locales if name.startswith(("de_", "fr_", "da_"))]
+    if not comma:
+        made = os.path.join(work, "locale")
+        os.makedirs(made, exist_ok=True)
+        if subprocess.run(["localedef", "-i", "de_DE", "-f", "UTF-8", os.path.join(made, "de_DE.UTF-8")],
+                          stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL).returncode not in (0, 1):
+            return "no locale with a decimal comma can be made here"
+        env = {"LOCPATH": made, "LC_ALL": "de_DE.UTF-8"}
+    else:
+        env = {"LC_ALL": comma[0]}
+    path = first_disk()
+    assert document("hints", "--json", path, env=env) == document("hints", "--json", path)
+
+
+@test("real frames: hints on the 1024-pixel disks, verdicts in cycle 24, none breaks among the strong ones")
+def _():
+    paths = [os.path.join(REAL, "magnetograms", name) for name in
+             ("mdi.fd_m_96m_lev182.20101015_000000_TAI.data.fits", "mdi.fd_M_96m_lev182.20110401_000000_TAI.data.fits")]
+    if not all(os.path.exists(path) for path in paths):
+        return "real data not there"
+    for found in document("hints", "--json", *paths):
+        assert 3 <= len(found["hints"]) <= 20, len(found["hints"])
+        for hint in found["hints"]:
+            measure = hint["measure"]
+            assert measure["cycle"]["number"] == 24 and measure["cycle"]["sure"]
+            if hint["kind"] == "bipole" and measure["flux_unsigned_mx"] > 4e21:
+                assert measure["hale"]["verdict"] != "breaks", measure["leading"]
+
+
+shutil.rmtree(work, ignore_errors=True)
+print(f"1..{number}")
+sys.exit(1 if failed else 0)
