@@ -3,11 +3,13 @@
  */
 #pragma once
 
-/* TfDivide: the line on the wings that parts an old cycle from the new one about a minimum, one a minimum and hemisphere.
+/* TfDivide: the line on the wings that parts an old cycle from the new one about a minimum, one a
+ * minimum and hemisphere.
  *
- * It acts from 24 months before to 18 months after the minimum (options). Computed: midway between the latitudes expected of
- * the old and the new cycle; moved: a polyline a person drew. Within band_deg of it a region's cycle is unsure. A
- * cycle is told from time and latitude only, never from polarity. A set of divides belongs to a study.
+ * It acts from 24 months before to 18 months after the minimum (options). Computed: midway between
+ * the latitudes expected of the old and the new cycle; moved: a polyline a person drew. Within
+ * band_deg of it a region's cycle is unsure. A cycle is told from time and latitude only, never
+ * from polarity. A set of divides belongs to a study.
  */
 
 #include <glib.h>
@@ -33,29 +35,48 @@ extern const TfOption tf_divide_options[];
 
 typedef struct _TfDivides TfDivides; /* immutable, reference counted */
 
-/** tf_divides_new: all computed. */
+/** tf_divides_new: all computed. A provisional minimum that is not after the last listed maximum is
+ * not used. */
 TfDivides *tf_divides_new (const TfDivideParams *params);
-/** tf_divides_with: a copy in which the divide at the minimum beginning @cycle, hemisphere +1/-1, follows @n points
- * (time, |lat|), sorted by time; n 0 sets it back to computed. */
-TfDivides *tf_divides_with (const TfDivides *divides, int cycle, int hemisphere, const TfTime *times,
-                            const double *lats, guint n);
+/** tf_divides_with: a copy in which the divide at the minimum beginning @cycle, hemisphere +1/-1,
+ * follows @n points (time, |lat|), sorted by time; n 0 sets it back to computed. Linear between
+ * points; beyond the first and the last their latitudes hold. It acts in the same months as the
+ * computed one. */
+TfDivides *tf_divides_with (const TfDivides *divides, int cycle, int hemisphere,
+                            const TfTime *times, const double *lats, guint n);
 TfDivides *tf_divides_ref (TfDivides *divides);
 void tf_divides_unref (TfDivides *divides);
 const TfDivideParams *tf_divides_get_params (const TfDivides *divides);
 gboolean tf_divides_is_moved (const TfDivides *divides, int cycle, int hemisphere);
-/** tf_divides_latitude: |lat| of the divide about the minimum beginning @cycle; NaN where it does not act. */
+/** tf_divides_latitude: |lat| of the divide about the minimum beginning @cycle; NaN where it does
+ * not act. */
 double tf_divides_latitude (const TfDivides *divides, int cycle, int hemisphere, TfTime time);
 
 typedef struct
 {
-  int number;          /* the cycle, or the likelier one when unsure; 0 unknown */
-  int other;           /* when unsure: the other reading; 0 */
+  int number; /* the cycle, or the likelier one when unsure; 0 unknown */
+  int other;  /* when unsure: the other reading; 0 */
   gboolean sure;
-  const char *reason;  /* note code: "cycle-by-date", "cycle-by-divide", "cycle-near-divide", "cycle-early-wing",
-                          "cycle-late-wing", "cycle-next-minimum-unknown", "cycle-provisional", "cycle-no-time" */
+  const char *reason; /* note code. Sure: "cycle-by-date", "cycle-by-divide", "cycle-provisional"
+                         (either, leaning on a provisional minimum). Unsure: "cycle-near-divide",
+                         "cycle-early-wing", "cycle-late-wing", "cycle-next-minimum-unknown",
+                         "cycle-no-latitude", "cycle-no-time", "cycle-before-table" */
 } TfCycleCall;
 
-/** tf_divides_call: to which cycle a region at @lat_deg (signed) and @time belongs. */
+/**
+ * tf_divides_call: to which cycle a region belongs; the first rule that applies says it.
+ *
+ * 1. No time, or before cycle 1: unsure, number 0.
+ * 2. by_date_only, or far from every minimum: the date.
+ * 3. No latitude (NaN): unsure.
+ * 4. A divide acts: above it the new cycle, below the old; within band_deg (included) unsure.
+ * 5. The year after a divide ends and |lat| < near_lat_deg: unsure.
+ * 6. The year before one begins and |lat| >= far_lat_deg: unsure.
+ * 7. late_months after the last maximum, next minimum not known, |lat| > late_lat_deg: unsure.
+ * 8. The date.
+ *
+ * @lat_deg: signed; 0 counts as north
+ */
 TfCycleCall tf_divides_call (const TfDivides *divides, TfTime time, double lat_deg);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfDivides, tf_divides_unref)

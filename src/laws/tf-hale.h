@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* TfHale: the table of Hale's law: one row a cycle and hemisphere, one over the hemispheres, one over all cycles (cycle 0).
- * share = breaks / (keeps + breaks), n that denominator; "cannot say" always beside it. */
+/* TfHale: the table of Hale's law: one row a cycle and hemisphere, one over the hemispheres, one
+ * over all cycles (cycle 0). share = breaks / (keeps + breaks), n that denominator; "cannot say"
+ * always beside it. */
 
 #include <glib.h>
 
@@ -25,17 +26,38 @@ typedef struct
 {
   int cycle;      /* 0: all */
   int hemisphere; /* 1, -1, 0 both */
-  guint n, regions, keeps, breaks, cannot_say;
-  double share;
-  TfInterval bounds;         /* at least / at most: every "cannot say" keeps / breaks */
-  double expected_false;     /* share expected to break from position errors alone */
+  guint n;        /* keeps + breaks */
+  guint regions;  /* distinct regions among those n */
+  guint keeps, breaks, cannot_say;
+  double share;          /* breaks / n; NaN for n = 0 */
+  TfInterval bounds;     /* at least / at most: every "cannot say" keeps / breaks */
+  double expected_false; /* mean of tf_hale_expected_false() over the n rows that have one; NaN when
+                            none has */
   TfInterval wilson, clopper_pearson, cluster;
 } TfHaleRow;
 
-/** tf_hale_table: @verdicts: one a row of @sample. Returns: (element-type TfHaleRow) (transfer full): by cycle, then N, S, both; last all. */
-GArray *tf_hale_table (const TfSample *sample, const TfVerdict *verdicts, const TfHaleParams *params);
-/** tf_hale_expected_false: chance that a position error turns the axis over, so that a keeping region reads as breaking:
- * from separation and its uncertainty and the tilt's; NaN when they are absent. */
+/**
+ * tf_hale_table:
+ * @verdicts: one a row of @sample
+ * A row whose cycle is unsure counts (as "cannot say") with its likelier cycle; one without a cycle
+ * in the last row only.
+ * Returns: (element-type TfHaleRow) (transfer full): by cycle, then N, S, both; last over all,
+ * cycle 0.
+ */
+GArray *tf_hale_table (const TfSample *sample, const TfVerdict *verdicts,
+                       const TfHaleParams *params);
+/**
+ * tf_hale_expected_false: chance that position errors alone turn an axis over, so that a keeping
+ * region reads as breaking.
+ *
+ * The leader is the western pole, so it changes when the east-west component of the separation, x =
+ * s cos(tilt), changes sign. Errors of the separation vector are taken as Gaussian and independent
+ * along the axis (sigma_s) and across it (s sigma_tilt, in radians): sigma_x^2 = (sigma_s cos
+ * tilt)^2 + (s sigma_tilt sin tilt)^2, and the chance is Q (x / sigma_x), Q the upper tail of the
+ * normal distribution. Own derivation; checked against random draws in the tests.
+ * Returns: 0 to 0.5; NaN when separation, its uncertainty, tilt (or bearing) or its uncertainty is
+ * absent.
+ */
 double tf_hale_expected_false (const TfSampleRow *row);
 
 G_END_DECLS

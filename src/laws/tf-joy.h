@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* TfJoy: tilt against latitude. Forms x estimators as a const table; this header has the default (linear through the origin,
- * robust) and whatever rows are filled; a row not filled is not offered. */
+/* TfJoy: tilt against latitude. Forms x estimators as a const table; this header has the default
+ * (linear through the origin, robust) and whatever rows are filled; a row not filled is not
+ * offered. */
 
 #include <glib.h>
 
@@ -39,23 +40,33 @@ typedef struct
   int draws, seed;
 } TfJoyParams;
 extern const TfOption tf_joy_options[];
-extern const char *const tf_joy_form_names[];      /* "linear" "linear-free" "sine" "sine-of-tilt" */
-extern const char *const tf_joy_estimator_names[]; /* "least-squares" "flux-weighted" "robust" "bin-medians" */
+extern const char *const tf_joy_form_names[]; /* "linear" "linear-free" "sine" "sine-of-tilt" */
+/* "least-squares" "flux-weighted" "robust" "bin-medians"  */
+extern const char *const tf_joy_estimator_names[];
 
 typedef struct
 {
   int cycle, hemisphere; /* 0: all / both */
   guint n, regions, no_polarity;
-  double slope, intercept;  /* deg/deg; SINE: deg; SINE_OF_TILT: 1. intercept NaN where the form has none */
+  double slope;     /* in tf_joy_unit() */
+  double intercept; /* deg; NaN where the form has none */
   TfInterval slope_ci, intercept_ci; /* bootstrap clustered by region */
-  double scatter_deg;       /* 1.4826 MAD of the residuals */
+  double scatter_deg;                /* 1.4826 MAD of the residuals */
   double mean_tilt_deg, median_tilt_deg;
+  double axial_mean_deg;  /* half the direction of the mean of doubled angles, (-90, 90] */
+  double axial_resultant; /* its length, 0 to 1 */
 } TfJoyFit;
 
-/** tf_joy_fit: one cycle and hemisphere (0: all / both). NaN slope when fewer than 3 rows. */
+/** tf_joy_fit: one cycle (of which each row must surely be) and hemisphere (0: all / both). Slope
+ * NaN when fewer than 3 rows, or when the form has no such estimator (tf_joy_offers()). */
 TfJoyFit tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
                      const TfJoyParams *params);
-/** tf_joy_uses: whether a row enters the default Joy sample. */
+/** tf_joy_offers: whether that form can be fitted in that way; linear-free has no robust estimator
+ * yet. */
+gboolean tf_joy_offers (TfJoyForm form, TfJoyEstimator estimator);
+/** tf_joy_uses: whether a row enters the Joy sample of @params: it has a latitude and a tilt that
+ * is not too steep, does not break Hale's law, and is neither too compact nor too narrow where that
+ * is known; flux-weighted: it has a flux. */
 gboolean tf_joy_uses (const TfSampleRow *row, const TfVerdict *verdict, const TfJoyParams *params);
 const char *tf_joy_unit (TfJoyForm form);
 
@@ -66,9 +77,11 @@ typedef struct
   gboolean magnetic; /* else white light */
   double (*tilt) (double abs_lat_deg);
 } TfJoyRelation;
-extern const TfJoyRelation tf_joy_relations[]; /* ends with name NULL; index 0: Stenflo & Kosovichev 2012 */
+/** tf_joy_relations: ends with name NULL; index 0: Stenflo & Kosovichev 2012. */
+extern const TfJoyRelation tf_joy_relations[];
 
-/** tf_joy_expected: where Joy's law would put a tilt: centre and scatter, deg, at |lat| and separation. */
+/** tf_joy_expected: where Joy's law would put a tilt: centre (tf_joy_relations[0]) and scatter,
+ * deg, at latitude and separation; NaN for the one or the other when its argument is. */
 void tf_joy_expected (double lat_deg, double separation_deg, double *tilt_deg, double *scatter_deg);
 
 G_END_DECLS

@@ -3,8 +3,11 @@
  */
 #pragma once
 
-/* Proportions and resampling shared by the laws. Intervals by GSL's distributions; random numbers by GSL's mt19937, seeded, so that a
- * run repeats to the last digit. */
+/* Proportions and resampling shared by the laws. Intervals by GSL's distributions; random numbers
+ * by GSL's mt19937, seeded, so that a run repeats to the last digit. GSL's error handler ends the
+ * program by default: the programs switch it off with gsl_set_error_handler_off (), and nothing
+ * here gives GSL an argument for which it would be called. An interval that cannot be had is NaN on
+ * both sides. */
 
 #include <glib.h>
 
@@ -15,25 +18,31 @@ typedef struct
   double low, high;
 } TfInterval;
 
-/** tf_wilson: Wilson 1927 score interval of x of n at @level (0.95); NaN for n = 0. */
+/** tf_wilson: Wilson 1927 score interval of x of n at @level (0.95); NaN for n = 0, x > n or a
+ * level outside (0, 1). */
 TfInterval tf_wilson (guint x, guint n, double level);
-/** tf_clopper_pearson: exact, by beta quantiles (Clopper & Pearson 1934). */
+/** tf_clopper_pearson: exact, by the beta quantiles (x, n-x+1) and (x+1, n-x) (Clopper & Pearson
+ * 1934); NaN as above. */
 TfInterval tf_clopper_pearson (guint x, guint n, double level);
 /** tf_quantile: of @n sorted values, linear between order statistics (type 7). */
 double tf_quantile (const double *sorted, guint n, double p);
-/** tf_median: of values in any order (copied); NaN for none. */
+/** tf_median: of values in any order (copied); NaN for none, and when one is NaN. */
 double tf_median (const double *values, guint n);
-/** tf_weighted_median: smallest value at which half of the weight is reached, midway on a tie; NaN for no weight. */
+/** tf_weighted_median: smallest value at which half of the weight is reached, midway to the next on
+ * a tie; rows that are not finite or have no weight are left out; NaN when none is left. */
 double tf_weighted_median (const double *values, const double *weights, guint n);
 
 /** TfResampleFunc: the statistic for the rows given by index; NaN when it cannot be had. */
 typedef double (*TfResampleFunc) (const guint *rows, guint n, gpointer data);
 /**
- * tf_bootstrap_clusters: percentile interval of a statistic when whole clusters are drawn with replacement.
- * @cluster: cluster id of each of @n rows (any numbers)
- * @seed: generator mt19937
+ * tf_bootstrap_clusters: percentile interval of a statistic when whole clusters are drawn with
+ * replacement.
+ * @cluster: cluster id of each of @n rows (any numbers; only which rows share one matters)
+ * @seed: generator mt19937 (its low 32 bits)
+ * Draws in which the statistic is NaN are left out. NaN for fewer than two clusters, or when more
+ * than half of the draws are NaN.
  */
-TfInterval tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed, double level,
-                                  TfResampleFunc func, gpointer data);
+TfInterval tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed,
+                                  double level, TfResampleFunc func, gpointer data);
 
 G_END_DECLS

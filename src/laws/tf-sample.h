@@ -5,8 +5,8 @@
 
 /* TfSample: the rows a law is tested on, as plain columns; row k of every column is one pick.
  *
- * Filled by study (from a ledger), by simulate, or from an outside table. Laws never change it. A quantity that a source lacks
- * is NaN (numbers), 0 (polarity), -1 (yes/no).
+ * Filled by study (from a ledger), by simulate, or from an outside table. Laws never change it. A
+ * quantity that a source lacks is NaN (numbers), 0 (polarity), -1 (yes/no).
  */
 
 #include <glib.h>
@@ -18,26 +18,26 @@ G_BEGIN_DECLS
 typedef enum
 {
   TF_ORIGIN_HINT,
-  TF_ORIGIN_KEPT,    /* "kept as hinted" */
+  TF_ORIGIN_KEPT, /* "kept as hinted" */
   TF_ORIGIN_CHANGED,
-  TF_ORIGIN_DRAWN,   /* "drawn new" */
+  TF_ORIGIN_DRAWN, /* "drawn new" */
   TF_ORIGIN_OUTSIDE,
 } TfOrigin;
 
 typedef struct
 {
   TfTime time;
-  guint32 region;         /* cluster: rows of one region share it */
+  guint32 region; /* cluster: rows of one region share it */
   guint32 passage;
-  double lat_deg;         /* midpoint of the poles, signed */
+  double lat_deg; /* midpoint of the poles, signed */
   double leading_lat_deg, following_lat_deg;
   double cmd_deg, mu;
-  double axis_tilt_deg;   /* NaN when straddling or absent */
+  double axis_tilt_deg; /* NaN when straddling or absent */
   double axis_bearing_deg;
   double tilt_sigma_deg;
   double separation_deg, separation_sigma_deg;
-  double flux_mx;         /* unsigned */
-  double imbalance;       /* (+ - -)/(+ + -) */
+  double flux_mx;   /* unsigned */
+  double imbalance; /* (+ - -)/(+ + -) */
   double compactness;
   double axial_dipole_gauss;
   int leading_polarity;   /* 1, -1, 0 none in the source */
@@ -48,7 +48,8 @@ typedef struct
   TfOrigin origin;
 } TfSampleRow;
 
-typedef struct _TfSample TfSample; /* growable until frozen by first reader's convention: fill, then read */
+/* Fill it first, then read it; from then on threads may share it. */
+typedef struct _TfSample TfSample;
 
 TfSample *tf_sample_new (void);
 void tf_sample_free (TfSample *sample);

@@ -1,0 +1,269 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-joy-line.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "tf-proportion.h"
+
+enum
+{
+  BINS = 18, /* of 5 deg, |lat| 0 to 90 */
+  MIN_IN_BIN = 5
+};
+#define BIN_DEG 5.0
+
+struct _TfJoyPoints
+{
+  guint n;
+  double *x, *y, *flux, *count;
+  int *bin;
+  guint *by_ratio, n_ratio; /* points with x > 0, by y / x */
+  guint *by_y;              /* all points, by y */
+  double bin_scatter[BINS]; /* of y; over the whole sample */
+};
+
+static int
+compare_by (gconstpointer a, gconstpointer b, gpointer data)
+{
+  const double *keys = data;
+  double left = keys[*(const guint *)a], right = keys[*(const guint *)b];
+  return (left > right) - (left < right);
+}
+
+static void
+order_points (TfJoyPoints *points)
+{
+  g_autofree double *ratio = g_new (double, points->n);
+  points->by_ratio = g_new (guint, points->n);
+  points->by_y = g_new (guint, points->n);
+  for (guint k = 0; k < points->n; k++)
+    {
+      ratio[k] = points->y[k] / points->x[k];
+      points->by_y[k] = k;
+      if (points->x[k] > 0.0)
+        points->by_ratio[points->n_ratio++] = k;
+    }
+  if (points->n == 0)
+    return;
+  g_qsort_with_data (points->by_ratio, (int)points->n_ratio, sizeof (guint), compare_by, ratio);
+  g_qsort_with_data (points->by_y, (int)points->n, sizeof (guint), compare_by, points->y);
+}
+
+static double
+scatter_of_bin (const TfJoyPoints *points, int bin)
+{
+  g_autofree double *values = g_new (double, points->n);
+  guint m = 0;
+  for (guint k = 0; k < points->n; k++)
+    if (points->bin[k] == bin)
+      values[m++] = points->y[k];
+  double centre = tf_median (values, m);
+  for (guint k = 0; k < m; k++)
+    values[k] = fabs (values[k] - centre);
+  return m < MIN_IN_BIN ? 0.0 : 1.4826 * tf_median (values, m);
+}
+
+/* With no scatter anywhere all bins weigh by their counts alone. */
+static void
+measure_scatter (TfJoyPoints *points)
+{
+  double greatest = 0.0;
+  for (int b = 0; b < BINS; b++)
+    {
+      points->bin_scatter[b] = scatter_of_bin (points, b);
+      greatest = fmax (greatest, points->bin_scatter[b]);
+    }
+  double least = greatest > 0.0 ? 0.01 * greatest : 1.0;
+  for (int b = 0; b < BINS; b++)
+    points->bin_scatter[b] = fmax (points->bin_scatter[b], least);
+}
+
+TfJoyPoints *
+tf_joy_points_new (guint n, const double *x, const double *y, const double *flux, const double *lat)
+{
+  TfJoyPoints *points = g_new0 (TfJoyPoints, 1);
+  points->n = n;
+  points->x = g_memdup2 (x, n * sizeof *x);
+  points->y = g_memdup2 (y, n * sizeof *y);
+  points->flux = g_memdup2 (flux, n * sizeof *flux);
+  points->count = g_new (double, n);
+  points->bin = g_new (int, n);
+  for (guint k = 0; k < n; k++)
+    {
+      points->count[k] = 1.0;
+      points->bin[k] = CLAMP ((int)floor (lat[k] / BIN_DEG), 0, BINS - 1);
+    }
+  order_points (points);
+  measure_scatter (points);
+  return points;
+}
+
+void
+tf_joy_points_free (TfJoyPoints *points)
+{
+  g_free (points->x);
+  g_free (points->y);
+  g_free (points->flux);
+  g_free (points->count);
+  g_free (points->bin);
+  g_free (points->by_ratio);
+  g_free (points->by_y);
+  g_free (points);
+}
+
+void
+tf_joy_points_count (TfJoyPoints *points, const guint *rows, guint n)
+{
+  memset (points->count, 0, points->n * sizeof *points->count);
+  for (guint k = 0; k < n; k++)
+    points->count[rows[k]] += 1.0;
+}
+
+/* Weighted sums about the weighted means, so that the free line loses no digits. */
+typedef struct
+{
+  double w, x, y, xx, xy; /* sum of weights; means; central sums */
+} Sums;
+
+static void
+sums_add (Sums *sums, double w, double x, double y)
+{
+  if (!(w > 0.0))
+    return;
+  sums->w += w;
+  double dx = x - sums->x, part = w / sums->w;
+  sums->x += part * dx;
+  sums->y += part * (y - sums->y);
+  sums->xx += w * dx * (x - sums->x);
+  sums->xy += w * dx * (y - sums->y);
+}
+
+static TfJoyLine
+line_of_sums (const Sums *sums, gboolean free_line)
+{
+  TfJoyLine none = { NAN, NAN };
+  if (!(sums->w > 0.0))
+    return none;
+  if (free_line)
+    {
+      double slope = sums->xx > 0.0 ? sums->xy / sums->xx : NAN;
+      return (TfJoyLine){ slope, sums->y - slope * sums->x };
+    }
+  double xx = sums->xx + sums->w * sums->x * sums->x;
+  double xy = sums->xy + sums->w * sums->x * sums->y;
+  return (TfJoyLine){ xx > 0.0 ? xy / xx : NAN, NAN };
+}
+
+static TfJoyLine
+least_squares (const TfJoyPoints *points, gboolean by_flux, gboolean free_line)
+{
+  Sums sums = { 0 };
+  for (guint k = 0; k < points->n; k++)
+    sums_add (&sums, by_flux ? points->count[k] * points->flux[k] : points->count[k], points->x[k],
+              points->y[k]);
+  return line_of_sums (&sums, free_line);
+}
+
+TfJoyLine
+tf_joy_line_least_squares (const TfJoyPoints *points)
+{
+  return least_squares (points, FALSE, FALSE);
+}
+
+TfJoyLine
+tf_joy_line_flux_weighted (const TfJoyPoints *points)
+{
+  return least_squares (points, TRUE, FALSE);
+}
+
+TfJoyLine
+tf_joy_line_free_least_squares (const TfJoyPoints *points)
+{
+  return least_squares (points, FALSE, TRUE);
+}
+
+TfJoyLine
+tf_joy_line_free_flux_weighted (const TfJoyPoints *points)
+{
+  return least_squares (points, TRUE, TRUE);
+}
+
+/* A weighted median as values come in order: the first at which half of the weight is passed,
+ * midway to the next when it is met within rounding. */
+typedef struct
+{
+  double half, sum, value;
+  gboolean met, done;
+} RunningMedian;
+
+static void
+running_add (RunningMedian *median, double value, double weight)
+{
+  if (median->done || !(weight > 0.0))
+    return;
+  if (median->met)
+    {
+      median->value = 0.5 * (median->value + value);
+      median->done = TRUE;
+      return;
+    }
+  median->sum += weight;
+  median->value = value;
+  median->met = fabs (median->sum - median->half) <= 2e-12 * median->half;
+  median->done = !median->met && median->sum > median->half;
+}
+
+TfJoyLine
+tf_joy_line_robust (const TfJoyPoints *points)
+{
+  double total = 0.0;
+  for (guint k = 0; k < points->n; k++)
+    total += points->count[k] * points->x[k];
+  RunningMedian median = { .half = 0.5 * total, .value = NAN };
+  for (guint j = 0; j < points->n_ratio && !median.done; j++)
+    {
+      guint k = points->by_ratio[j];
+      running_add (&median, points->y[k] / points->x[k], points->count[k] * points->x[k]);
+    }
+  return (TfJoyLine){ median.value, NAN };
+}
+
+static TfJoyLine
+bin_medians (const TfJoyPoints *points, gboolean free_line)
+{
+  double total[BINS] = { 0 }, sum_x[BINS] = { 0 };
+  for (guint k = 0; k < points->n; k++)
+    {
+      total[points->bin[k]] += points->count[k];
+      sum_x[points->bin[k]] += points->count[k] * points->x[k];
+    }
+  RunningMedian medians[BINS];
+  for (int b = 0; b < BINS; b++)
+    medians[b] = (RunningMedian){ .half = 0.5 * total[b], .value = NAN };
+  for (guint j = 0; j < points->n; j++)
+    {
+      guint k = points->by_y[j];
+      running_add (&medians[points->bin[k]], points->y[k], points->count[k]);
+    }
+  Sums sums = { 0 };
+  for (int b = 0; b < BINS; b++)
+    if (total[b] >= MIN_IN_BIN)
+      sums_add (&sums, total[b] / (points->bin_scatter[b] * points->bin_scatter[b]),
+                sum_x[b] / total[b], medians[b].value);
+  return line_of_sums (&sums, free_line);
+}
+
+TfJoyLine
+tf_joy_line_bin_medians (const TfJoyPoints *points)
+{
+  return bin_medians (points, FALSE);
+}
+
+TfJoyLine
+tf_joy_line_free_bin_medians (const TfJoyPoints *points)
+{
+  return bin_medians (points, TRUE);
+}

@@ -1,0 +1,275 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-joy.h"
+
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-constants.h"
+#include "tf-joy-line.h"
+
+const char *const tf_joy_form_names[] = { "linear", "linear-free", "sine", "sine-of-tilt", NULL };
+const char *const tf_joy_estimator_names[]
+    = { "least-squares", "flux-weighted", "robust", "bin-medians", NULL };
+
+#define O(member) offsetof (TfJoyParams, member)
+const TfOption tf_joy_options[] = {
+  { "joy-form", TF_OPTION_CHOICE, "", TF_JOY_LINEAR, 0, 3, tf_joy_form_names,
+    N_ ("form of Joy's law"), O (form) },
+  { "joy-estimator", TF_OPTION_CHOICE, "", TF_JOY_ROBUST, 0, 3, tf_joy_estimator_names,
+    N_ ("how the form is fitted"), O (estimator) },
+  { "joy-with-breaks", TF_OPTION_BOOL, "", 0, 0, 1, NULL,
+    N_ ("with the regions that break Hale's law"), O (with_breaks) },
+  { "joy-compactness", TF_OPTION_NUMBER, "", 0.5, 0, 10, NULL,
+    N_ ("smallest compactness, where it is known"), O (compactness_min) },
+  { "joy-separation", TF_OPTION_NUMBER, "deg", 0, 0, 30, NULL,
+    N_ ("smallest separation of the poles, where it is known"), O (separation_min_deg) },
+  { "joy-steep", TF_OPTION_NUMBER, "deg", 90, 0, 90, NULL, N_ ("largest size of the tilt"),
+    O (steep_max_deg) },
+  { "joy-level", TF_OPTION_NUMBER, "", 0.95, 0.5, 0.999, NULL,
+    N_ ("confidence level of the intervals of a fit"), O (level) },
+  { "joy-draws", TF_OPTION_INT, "", 1000, 0, 100000, NULL, N_ ("bootstrap draws of a fit; 0: none"),
+    O (draws) },
+  { "joy-seed", TF_OPTION_INT, "", 1, 0, G_MAXINT32, NULL, N_ ("seed of those draws"), O (seed) },
+  { NULL },
+};
+#undef O
+
+enum
+{
+  MIN_ROWS = 3
+};
+
+/* A form: what stands for latitude and tilt in its straight line, and the way back to a tilt. */
+typedef struct
+{
+  const char *unit; /* of the slope */
+  double (*x) (double abs_lat_deg);
+  double (*y) (double tilt_deg);
+  double (*tilt) (double y);
+} Form;
+
+static double
+same (double value)
+{
+  return value;
+}
+
+static double
+sine (double degrees)
+{
+  return sin (degrees * TF_DEG);
+}
+
+static double
+arc_sine (double value)
+{
+  return asin (CLAMP (value, -1.0, 1.0)) / TF_DEG;
+}
+
+static const Form forms[] = {
+  [TF_JOY_LINEAR] = { "deg/deg", same, same, same },
+  [TF_JOY_LINEAR_FREE] = { "deg/deg", same, same, same },
+  [TF_JOY_SINE] = { "deg", sine, same, same },
+  [TF_JOY_SINE_OF_TILT] = { "1", sine, sine, arc_sine },
+};
+
+/* What is offered. A NULL is a fit that this version does not make: the free line has no robust
+ * estimator yet. */
+static const TfJoyLineFunc fits[4][4] = {
+  [TF_JOY_LINEAR] = { tf_joy_line_least_squares, tf_joy_line_flux_weighted, tf_joy_line_robust,
+                      tf_joy_line_bin_medians },
+  [TF_JOY_LINEAR_FREE] = { tf_joy_line_free_least_squares, tf_joy_line_free_flux_weighted, NULL,
+                           tf_joy_line_free_bin_medians },
+  [TF_JOY_SINE] = { tf_joy_line_least_squares, tf_joy_line_flux_weighted, tf_joy_line_robust,
+                    tf_joy_line_bin_medians },
+  [TF_JOY_SINE_OF_TILT] = { tf_joy_line_least_squares, tf_joy_line_flux_weighted,
+                            tf_joy_line_robust, tf_joy_line_bin_medians },
+};
+
+gboolean
+tf_joy_offers (TfJoyForm form, TfJoyEstimator estimator)
+{
+  return (guint)form < 4 && (guint)estimator < 4 && fits[form][estimator] != NULL;
+}
+
+const char *
+tf_joy_unit (TfJoyForm form)
+{
+  return forms[form].unit;
+}
+
+gboolean
+tf_joy_uses (const TfSampleRow *row, const TfVerdict *verdict, const TfJoyParams *params)
+{
+  if (!isfinite (row->axis_tilt_deg) || !isfinite (row->lat_deg))
+    return FALSE;
+  if (verdict->kind == TF_VERDICT_BREAKS && !params->with_breaks)
+    return FALSE;
+  if (row->compactness < params->compactness_min
+      || row->separation_deg < params->separation_min_deg)
+    return FALSE;
+  if (params->estimator == TF_JOY_FLUX_WEIGHTED && !(row->flux_mx > 0.0 && isfinite (row->flux_mx)))
+    return FALSE;
+  return fabs (row->axis_tilt_deg) <= params->steep_max_deg;
+}
+
+static gboolean
+belongs (const TfSampleRow *row, const TfVerdict *verdict, int cycle, int hemisphere)
+{
+  if (cycle != 0 && (verdict->cycle.number != cycle || !verdict->cycle.sure))
+    return FALSE;
+  return hemisphere == 0 || (hemisphere > 0 ? row->lat_deg > 0.0 : row->lat_deg < 0.0);
+}
+
+/* The rows of one fit as plain columns. */
+typedef struct
+{
+  guint n, no_polarity;
+  double *lat, *tilt, *flux;
+  guint32 *region;
+} Columns;
+
+static void
+columns_clear (Columns *columns)
+{
+  g_free (columns->lat);
+  g_free (columns->tilt);
+  g_free (columns->flux);
+  g_free (columns->region);
+}
+
+G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (Columns, columns_clear)
+
+static Columns
+gather (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
+        const TfJoyParams *params)
+{
+  guint all = tf_sample_get_n (sample);
+  Columns c = { .lat = g_new (double, all),
+                .tilt = g_new (double, all),
+                .flux = g_new (double, all),
+                .region = g_new (guint32, all) };
+  for (guint k = 0; k < all; k++)
+    {
+      const TfSampleRow *row = tf_sample_get (sample, k);
+      if (!belongs (row, &verdicts[k], cycle, hemisphere)
+          || !tf_joy_uses (row, &verdicts[k], params))
+        continue;
+      c.lat[c.n] = fabs (row->lat_deg);
+      c.tilt[c.n] = row->axis_tilt_deg;
+      c.flux[c.n] = row->flux_mx;
+      c.region[c.n] = row->region;
+      c.no_polarity += row->leading_polarity == 0;
+      c.n++;
+    }
+  return c;
+}
+
+static guint
+count_regions (const Columns *c)
+{
+  g_autoptr (GHashTable) seen = g_hash_table_new (NULL, NULL);
+  for (guint k = 0; k < c->n; k++)
+    g_hash_table_add (seen, GUINT_TO_POINTER (c->region[k]));
+  return g_hash_table_size (seen);
+}
+
+/* 1.4826 times the median distance from the median. @values is overwritten. */
+static double
+robust_scatter (double *values, guint n)
+{
+  double centre = tf_median (values, n);
+  for (guint k = 0; k < n; k++)
+    values[k] = fabs (values[k] - centre);
+  return 1.4826 * tf_median (values, n);
+}
+
+/* Mean, median and axial mean: the tilt's axis has no direction, so angles are doubled, averaged
+ * and halved. */
+static void
+describe_tilts (const Columns *c, TfJoyFit *fit)
+{
+  double sum = 0.0, cosines = 0.0, sines = 0.0;
+  for (guint k = 0; k < c->n; k++)
+    {
+      sum += c->tilt[k];
+      cosines += cos (2.0 * c->tilt[k] * TF_DEG);
+      sines += sin (2.0 * c->tilt[k] * TF_DEG);
+    }
+  fit->mean_tilt_deg = c->n == 0 ? NAN : sum / c->n;
+  fit->median_tilt_deg = tf_median (c->tilt, c->n);
+  fit->axial_mean_deg = c->n == 0 ? NAN : 0.5 * atan2 (sines, cosines) / TF_DEG;
+  fit->axial_resultant = c->n == 0 ? NAN : hypot (sines, cosines) / c->n;
+}
+
+/* A bootstrap draw: the statistic of the points with the multiplicity that was drawn. */
+typedef struct
+{
+  TfJoyPoints *points;
+  TfJoyLineFunc func;
+  gboolean intercept;
+} Draw;
+
+static double
+draw_statistic (const guint *rows, guint n, gpointer data)
+{
+  Draw *draw = data;
+  tf_joy_points_count (draw->points, rows, n);
+  TfJoyLine line = draw->func (draw->points);
+  return draw->intercept ? line.intercept : line.slope;
+}
+
+static void
+fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit)
+{
+  const Form *form = &forms[params->form];
+  g_autofree double *x = g_new (double, c->n), *y = g_new (double, c->n);
+  for (guint k = 0; k < c->n; k++)
+    {
+      x[k] = form->x (c->lat[k]);
+      y[k] = form->y (c->tilt[k]);
+    }
+  TfJoyPoints *points = tf_joy_points_new (c->n, x, y, c->flux, c->lat);
+  TfJoyLineFunc func = fits[params->form][params->estimator];
+  TfJoyLine line = func (points);
+  fit->slope = line.slope;
+  fit->intercept = line.intercept;
+  for (guint k = 0; k < c->n; k++)
+    y[k] = c->tilt[k]
+           - form->tilt (line.slope * x[k] + (isnan (line.intercept) ? 0.0 : line.intercept));
+  fit->scatter_deg = robust_scatter (y, c->n);
+  guint draws = (guint)MAX (params->draws, 0);
+  Draw draw = { points, func, FALSE };
+  if (!isnan (line.slope))
+    fit->slope_ci = tf_bootstrap_clusters (c->region, c->n, draws, (guint64)params->seed,
+                                           params->level, draw_statistic, &draw);
+  draw.intercept = TRUE;
+  if (!isnan (line.intercept))
+    fit->intercept_ci = tf_bootstrap_clusters (c->region, c->n, draws, (guint64)params->seed,
+                                               params->level, draw_statistic, &draw);
+  tf_joy_points_free (points);
+}
+
+TfJoyFit
+tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
+            const TfJoyParams *params)
+{
+  const TfInterval none = { NAN, NAN };
+  g_auto (Columns) c = gather (sample, verdicts, cycle, hemisphere, params);
+  TfJoyFit fit = { .cycle = cycle,
+                   .hemisphere = hemisphere,
+                   .n = c.n,
+                   .regions = count_regions (&c),
+                   .no_polarity = c.no_polarity,
+                   .slope = NAN,
+                   .intercept = NAN,
+                   .slope_ci = none,
+                   .intercept_ci = none,
+                   .scatter_deg = NAN };
+  describe_tilts (&c, &fit);
+  if (c.n >= MIN_ROWS && tf_joy_offers (params->form, params->estimator))
+    fit_line (&c, params, &fit);
+  return fit;
+}

@@ -1,0 +1,109 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-sample.h"
+
+#include <math.h>
+
+struct _TfSample
+{
+  GArray *rows;
+};
+
+TfSample *
+tf_sample_new (void)
+{
+  TfSample *sample = g_new0 (TfSample, 1);
+  sample->rows = g_array_new (FALSE, FALSE, sizeof (TfSampleRow));
+  return sample;
+}
+
+void
+tf_sample_free (TfSample *sample)
+{
+  if (sample == NULL)
+    return;
+  g_array_unref (sample->rows);
+  g_free (sample);
+}
+
+void
+tf_sample_row_init (TfSampleRow *row)
+{
+  *row = (TfSampleRow){
+    .time = TF_TIME_UNKNOWN,
+    .lat_deg = NAN,
+    .leading_lat_deg = NAN,
+    .following_lat_deg = NAN,
+    .cmd_deg = NAN,
+    .mu = NAN,
+    .axis_tilt_deg = NAN,
+    .axis_bearing_deg = NAN,
+    .tilt_sigma_deg = NAN,
+    .separation_deg = NAN,
+    .separation_sigma_deg = NAN,
+    .flux_mx = NAN,
+    .imbalance = NAN,
+    .compactness = NAN,
+    .axial_dipole_gauss = NAN,
+    .leading_polarity = 0,
+    .leading_sure = -1,
+    .witnesses_differ = -1,
+    .straddles = -1,
+    .size = -1,
+    .origin = TF_ORIGIN_OUTSIDE,
+  };
+}
+
+void
+tf_sample_add (TfSample *sample, const TfSampleRow *row)
+{
+  g_array_append_vals (sample->rows, row, 1);
+}
+
+guint
+tf_sample_get_n (const TfSample *sample)
+{
+  return sample->rows->len;
+}
+
+const TfSampleRow *
+tf_sample_get (const TfSample *sample, guint k)
+{
+  g_return_val_if_fail (k < sample->rows->len, NULL);
+  return &g_array_index (sample->rows, TfSampleRow, k);
+}
+
+static int
+compare_ids (gconstpointer a, gconstpointer b)
+{
+  guint32 left = *(const guint32 *)a, right = *(const guint32 *)b;
+  return (left > right) - (left < right);
+}
+
+/* How many different numbers stand at @offset of the rows. */
+static guint
+count_distinct (const TfSample *sample, gsize offset)
+{
+  guint n = sample->rows->len, count = 0;
+  g_autofree guint32 *ids = g_new (guint32, n);
+  for (guint k = 0; k < n; k++)
+    ids[k] = *(const guint32 *)((const char *)tf_sample_get (sample, k) + offset);
+  if (n > 0)
+    qsort (ids, n, sizeof *ids, compare_ids);
+  for (guint k = 0; k < n; k++)
+    count += k == 0 || ids[k] != ids[k - 1];
+  return count;
+}
+
+guint
+tf_sample_count_regions (const TfSample *sample)
+{
+  return count_distinct (sample, offsetof (TfSampleRow, region));
+}
+
+guint
+tf_sample_count_passages (const TfSample *sample)
+{
+  return count_distinct (sample, offsetof (TfSampleRow, passage));
+}
