@@ -1,0 +1,265 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-wings-private.h"
+
+#include <glib/gi18n-lib.h>
+#include <math.h>
+
+#include "tf-chart-private.h"
+#include "tf-cycle.h"
+
+/* -- time ------------------------------------------------------------------------------------ */
+
+/* Steps of the time scale, finest first. Days are counted within a month. */
+typedef struct
+{
+  int days, months;     /* one of them is 0 */
+  const char *form;     /* for g_date_time_format */
+} Step;
+
+static const Step steps[] = {
+  { 1, 0, "%-d %b" }, { 2, 0, "%-d %b" }, { 5, 0, "%-d %b" }, { 10, 0, "%-d %b" }, { 0, 1, "%b %Y" },
+  { 0, 3, "%b %Y" },  { 0, 6, "%b %Y" },  { 0, 12, "%Y" },    { 0, 24, "%Y" },     { 0, 60, "%Y" },
+  { 0, 120, "%Y" },   { 0, 240, "%Y" },   { 0, 600, "%Y" },   { 0, 1200, "%Y" },
+};
+
+static double
+step_years (const Step *step)
+{
+  return step->days / 365.25 + step->months / 12.0;
+}
+
+static double
+year_of (int year, int month, int day)
+{
+  GDate date;
+  g_date_set_dmy (&date, (GDateDay) day, (GDateMonth) month, (GDateYear) year);
+  int days = g_date_is_leap_year ((GDateYear) year) ? 366 : 365;
+  return year + (g_date_get_day_of_year (&date) - 1.0) / days;
+}
+
+static char *
+dup_label (const Step *step, int year, int month, int day)
+{
+  g_autoptr (GDateTime) date = g_date_time_new_utc (year, month, day, 0, 0, 0);
+  return date != NULL ? g_date_time_format (date, step->form) : g_strdup ("");
+}
+
+static const Step *
+choose_step (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  double span = wings->to_year - wings->from_year;
+  for (guint k = 0; k < G_N_ELEMENTS (steps); k++)
+    {
+      double width;
+      g_autofree char *label = dup_label (&steps[k], 2026, 12, 28);
+      tf_chart_measure (cr, style, label, &width, NULL);
+      if (step_years (&steps[k]) / span * plot.width >= width * 1.5 + style->text_pt)
+        return &steps[k];
+    }
+  return &steps[G_N_ELEMENTS (steps) - 1];
+}
+
+static void
+draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, const Step *step, int year,
+           int month, int day)
+{
+  double x = tf_wings_x (wings, plot, year_of (year, month, day)), width;
+  if (x < plot.x - 0.5 || x > plot.x + plot.width + 0.5)
+    return;
+  double foot = plot.y + plot.height;
+  tf_chart_set (cr, style->line);
+  cairo_set_line_width (cr, 1);
+  cairo_move_to (cr, floor (x) + 0.5, foot);
+  cairo_line_to (cr, floor (x) + 0.5, foot + style->text_pt * 0.3);
+  cairo_stroke (cr);
+  g_autofree char *label = dup_label (step, year, month, day);
+  tf_chart_measure (cr, style, label, &width, NULL);
+  double right = plot.x + plot.width + style->text_pt * 0.9;
+  tf_chart_text (cr, style, MIN (x - width / 2, right - width), foot + style->text_pt * 0.35, 0, 0, style->faint, label);
+}
+
+static void
+draw_month (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, const Step *step, int year,
+            int month)
+{
+  if (step->months > 0)
+    {
+      if ((year * 12 + month - 1) % step->months == 0)
+        draw_tick (cr, wings, style, plot, step, year, month, 1);
+      return;
+    }
+  for (int day = 1; day <= 28 || step->days < 5; day += step->days)
+    {
+      if (day > g_date_get_days_in_month ((GDateMonth) month, (GDateYear) year))
+        break;
+      if (step->days < 2 || day < 31 - step->days / 2)
+        draw_tick (cr, wings, style, plot, step, year, month, day);
+    }
+}
+
+static void
+draw_times (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  const Step *step = choose_step (cr, wings, style, plot);
+  int from = (int) floor (CLAMP (wings->from_year, 1.0, 9000.0)), to = (int) floor (CLAMP (wings->to_year, 1.0, 9000.0));
+  for (int year = from; year <= to; year++)
+    if (step->months < 12 || year % (step->months / 12) == 0)
+      for (int month = 1; month <= (step->months >= 12 ? 1 : 12); month++)
+        {
+          double at = year_of (year, month, 1);
+          if (at > wings->from_year - 0.1 && at <= wings->to_year)
+            draw_month (cr, wings, style, plot, step, year, month);
+        }
+}
+
+/* -- latitude -------------------------------------------------------------------------------- */
+
+static double
+lat_step (const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  static const double lats[] = { 10, 20, 40 };
+  double unit = (plot.y - tf_wings_y (wings, plot, 1)) - (plot.y - tf_wings_y (wings, plot, 0));
+  for (guint k = 0; k < G_N_ELEMENTS (lats); k++)
+    if (lats[k] * unit >= style->text_pt * (k == 0 ? 2.4 : 1.4))
+      return lats[k];
+  return 80;
+}
+
+static void
+draw_latitudes (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  double step = lat_step (wings, style, plot), top = wings->lat_max_deg > 0 ? wings->lat_max_deg : 45;
+  for (double lat = -floor (top / step) * step; lat <= top; lat += step)
+    {
+      double y = floor (tf_wings_y (wings, plot, lat)) + 0.5;
+      gboolean equator = fabs (lat) < 1e-9;
+      g_autofree char *label = tf_chart_dup_degrees (lat, TRUE);
+      tf_chart_set (cr, equator ? tf_chart_mix (style->line, style->ink, 0.35) : style->line);
+      cairo_set_line_width (cr, equator ? 1.4 : 1);
+      cairo_move_to (cr, plot.x, y);
+      cairo_line_to (cr, plot.x + plot.width, y);
+      cairo_stroke (cr);
+      tf_chart_text (cr, style, plot.x - style->text_pt * 0.45, y, 1, 0.5, style->faint, label);
+    }
+}
+
+void
+tf_wings_draw_scale (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  draw_latitudes (cr, wings, style, plot);
+  if (isfinite (wings->from_year) && wings->to_year > wings->from_year)
+    draw_times (cr, wings, style, plot);
+}
+
+/* -- cycles and divides ---------------------------------------------------------------------- */
+
+static void
+draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, const TfCycle *cycle)
+{
+  double begin = tf_time_year (tf_cycle_minimum (cycle->number));
+  double end = tf_time_year (tf_cycle_minimum (cycle->number + 1)), width;
+  double from = MAX (begin, wings->from_year), to = isfinite (end) ? MIN (end, wings->to_year) : wings->to_year;
+  if (!(to > from))
+    return;
+  double left = tf_wings_x (wings, plot, from), right = tf_wings_x (wings, plot, to);
+  if (cycle->number % 2 != 0)
+    {
+      tf_chart_set (cr, style->band);
+      cairo_rectangle (cr, left, plot.y, right - left, plot.height);
+      cairo_fill (cr);
+    }
+  g_autofree char *full = g_strdup_printf (_ ("cycle %d"), cycle->number);
+  g_autofree char *brief = g_strdup_printf ("%d", cycle->number);
+  tf_chart_measure (cr, style, full, &width, NULL);
+  const char *label = width + 4 <= right - left ? full : brief;
+  tf_chart_measure (cr, style, label, &width, NULL);
+  if (width + 4 <= right - left)
+    tf_chart_text (cr, style, (left + right) / 2, plot.y - style->text_pt * 0.2, 0.5, 1, style->faint, label);
+}
+
+void
+tf_wings_draw_cycles (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  for (const TfCycle *cycle = tf_cycles; cycle->number > 0; cycle++)
+    draw_cycle (cr, wings, style, plot, cycle);
+}
+
+typedef struct
+{
+  double x, high, middle, low; /* the divide and the edges of its band */
+} DividePoint;
+
+static void
+draw_divide_band (cairo_t *cr, const TfChartStyle *style, const DividePoint *points, guint n)
+{
+  for (guint k = 0; k < n; k++)
+    cairo_line_to (cr, points[k].x, points[k].high);
+  for (guint k = n; k > 0; k--)
+    cairo_line_to (cr, points[k - 1].x, points[k - 1].low);
+  cairo_close_path (cr);
+  tf_chart_set_alpha (cr, style->teal, style->contrast ? 0.28 : 0.15);
+  cairo_fill (cr);
+  for (guint k = 0; k < n; k++)
+    cairo_line_to (cr, points[k].x, points[k].middle);
+  tf_chart_set (cr, style->teal);
+  cairo_set_line_width (cr, 1.6);
+  cairo_stroke (cr);
+}
+
+static void
+draw_divide_handles (cairo_t *cr, const TfChartStyle *style, const DividePoint *points, guint n, double radius)
+{
+  for (int end = 0; end < 2; end++)
+    {
+      const DividePoint *at = &points[end == 0 ? 0 : n - 1];
+      cairo_arc (cr, at->x, at->middle, radius, 0, 2 * G_PI);
+      tf_chart_set (cr, style->ground);
+      cairo_fill_preserve (cr);
+      tf_chart_set (cr, style->teal);
+      cairo_set_line_width (cr, 1.5);
+      cairo_stroke (cr);
+    }
+}
+
+static void
+draw_divide (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, int cycle, int hemisphere)
+{
+  const TfDivideParams *params = tf_divides_get_params (wings->divides);
+  double minimum = tf_time_year (tf_cycle_minimum (cycle));
+  if (minimum + params->after_months / 12.0 < wings->from_year
+      || minimum - params->before_months / 12.0 > wings->to_year)
+    return;
+  g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (DividePoint));
+  for (int month = -params->before_months; month <= params->after_months; month++)
+    {
+      double year = minimum + month * 0.999 / 12.0; /* the ends themselves may lie a breath outside */
+      double lat = tf_divides_latitude (wings->divides, cycle, hemisphere, tf_time_from_year (year));
+      DividePoint point = { .x = tf_wings_x (wings, plot, year),
+                            .high = tf_wings_y (wings, plot, hemisphere * (lat + params->band_deg)),
+                            .middle = tf_wings_y (wings, plot, hemisphere * lat),
+                            .low = tf_wings_y (wings, plot, hemisphere * (lat - params->band_deg)) };
+      if (isfinite (lat))
+        g_array_append_val (points, point);
+    }
+  if (points->len < 2)
+    return;
+  const DividePoint *first = &g_array_index (points, DividePoint, 0);
+  double across = g_array_index (points, DividePoint, points->len - 1).x - first->x;
+  draw_divide_band (cr, style, first, points->len);
+  if (across > 24)
+    draw_divide_handles (cr, style, first, points->len, MIN (3.2, plot.height * 0.04));
+}
+
+void
+tf_wings_draw_divides (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  if (wings->divides == NULL)
+    return;
+  for (const TfCycle *cycle = tf_cycles; cycle->number > 0; cycle++)
+    {
+      draw_divide (cr, wings, style, plot, cycle->number, 1);
+      draw_divide (cr, wings, style, plot, cycle->number, -1);
+    }
+}
