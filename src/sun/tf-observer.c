@@ -98,6 +98,14 @@ tf_earth_l0 (TfTime time, TfL0Kind kind)
   return earth_place (time, helio, bary) ? l0_of (time, helio[0], kind) : NAN;
 }
 
+double
+tf_observer_carrington (TfTime time, double stonyhurst_lon_deg, double distance_m)
+{
+  TfObserver earth = tf_observer_earth (time);
+  double later = (distance_m - earth.distance_m) / TF_LIGHT_M_S;
+  return tf_wrap_360 (earth.carrington_lon_deg + stonyhurst_lon_deg + TF_W1_DEG_DAY * later / TF_DAY_S);
+}
+
 /* The Sun's apparent direction (the geometric one moved by the Earth's velocity over that of light),
  * and at right angles to it the directions of celestial north of date and of east. */
 double

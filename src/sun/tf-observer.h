@@ -43,6 +43,12 @@ typedef enum
 /** tf_observer_earth: the Earth's centre at @time, by ERFA epv00 and the IAU pole and rotation.
  * All NaN when the time is unknown. */
 TfObserver tf_observer_earth (TfTime time);
+/**
+ * tf_observer_carrington: Carrington longitude of an observer whose Stonyhurst longitude is known.
+ * @distance_m: from the Sun's centre, m: light from a nearer Sun shows it a little later (0.08 deg between 0.2 au and 1 au)
+ * Returns: deg in [0, 360), with the corrections of TF_L0_IMAGE; NaN when a number is not known.
+ */
+double tf_observer_carrington (TfTime time, double stonyhurst_lon_deg, double distance_m);
 /** tf_earth_l0: Carrington longitude of the central meridian seen from the Earth, deg in [0, 360). */
 double tf_earth_l0 (TfTime time, TfL0Kind kind);
 /** tf_earth_p: position angle of the Sun's north pole from celestial north of date, east positive, deg. */

@@ -105,6 +105,22 @@ test_rotation_runs_on (void)
     tf_check_near ("there and back", tf_carrington_rotation (tf_carrington_time (rotation)), rotation, 4e-7);
 }
 
+/* At the Earth it is L0; nearer the Sun the picture is younger, and the Sun has turned on by
+ * 14.1844 deg/day for the light time saved. */
+static void
+test_other_observers (void)
+{
+  TfTime time = tt (2013, 10, 12.25);
+  TfObserver earth = tf_observer_earth (time);
+  tf_check_near ("at the Earth", tf_observer_carrington (time, 0.0, earth.distance_m), earth.carrington_lon_deg, 1e-12);
+  tf_check_angle ("west of it", tf_observer_carrington (time, -120.0, earth.distance_m), earth.carrington_lon_deg - 120.0, 1e-9);
+  double saved = 0.8 * TF_AU_M / TF_LIGHT_M_S / TF_DAY_S;
+  tf_check_angle ("nearer", tf_observer_carrington (time, 0.0, earth.distance_m - 0.8 * TF_AU_M),
+                  earth.carrington_lon_deg - 14.1844 * saved, 1e-9);
+  tf_check_nan ("nowhere", tf_observer_carrington (time, NAN, earth.distance_m));
+  tf_check_nan ("no time", tf_observer_carrington (TF_TIME_UNKNOWN, 0.0, earth.distance_m));
+}
+
 static void
 test_unknown_time (void)
 {
@@ -212,6 +228,7 @@ add_observer_tests (void)
   g_test_add_func ("/sun/observer/agrees-with-meeus-example-29a", test_meeus);
   g_test_add_func ("/sun/observer/rotations-start-when-the-almanac-says", test_rotation_starts);
   g_test_add_func ("/sun/observer/rotation-number-runs-on-evenly", test_rotation_runs_on);
+  g_test_add_func ("/sun/observer/other-observers-see-the-sun-at-their-own-light-time", test_other_observers);
   g_test_add_func ("/sun/observer/unknown-time-gives-no-number", test_unknown_time);
   g_test_add_func ("/sun/observer/angles-wrap-at-the-right-end", test_wraps);
   g_test_add_func ("/sun/observer/vantages-are-named-by-side-and-degree", test_vantage);
