@@ -1,0 +1,174 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-frame-write.h"
+
+#include <errno.h>
+#include <fitsio.h>
+#include <glib/gi18n-lib.h>
+#include <glib/gstdio.h>
+#include <math.h>
+#include <string.h>
+
+#include "tf-frame.h"
+#include "tf-header-private.h"
+
+/* Written by this file or by CFITSIO, never copied from the caller's header. */
+static const char *const structural[] = {
+  "SIMPLE", "XTENSION", "BITPIX", "NAXIS",  "NAXIS1",   "NAXIS2",  "NAXIS3", "EXTEND", "PCOUNT", "GCOUNT", "TFIELDS",
+  "BSCALE", "BZERO",    "BLANK",  "THEAP",  "CHECKSUM", "DATASUM", "DATE",   "END",    "LONGSTRN", NULL,
+};
+
+static gboolean
+is_structural (const char *keyword)
+{
+  return g_strv_contains (structural, keyword) || (keyword[0] == 'Z' && g_strv_contains (structural, keyword + 1))
+         || g_str_has_prefix (keyword, "ZTILE") || g_str_has_prefix (keyword, "ZVAL") || g_str_has_prefix (keyword, "ZNAME")
+         || g_str_has_prefix (keyword, "ZCMPTYP") || g_str_has_prefix (keyword, "TTYPE") || g_str_has_prefix (keyword, "TFORM");
+}
+
+static void
+write_header (fitsfile *file, const TfHeader *header, int *status)
+{
+  char card[81];
+  gboolean told_long = FALSE;
+  for (guint k = 0; header != NULL && k < tf_header_get_n (header); k++)
+    {
+      const char *keyword = tf_header_get_keyword (header, k), *text = tf_header_get (header, keyword);
+      if (is_structural (keyword))
+        continue;
+      if (tf_header_is_quoted (header, k) && strlen (text) > 60)
+        {
+          if (!told_long)
+            fits_write_key_longwarn (file, status);
+          told_long = TRUE;
+          fits_write_key_longstr (file, keyword, text, NULL, status);
+          continue;
+        }
+      tf_header_format_card (header, k, card);
+      fits_write_record (file, card, status);
+    }
+}
+
+static void
+write_scaling (fitsfile *file, const TfFrameWrite *how, int *status)
+{
+  double scale = how->bscale, zero = how->bzero;
+  LONGLONG blank = how->blank;
+  if (how->bitpix < 0)
+    return;
+  fits_write_key (file, TDOUBLE, "BSCALE", &scale, "physical = stored * BSCALE + BZERO", status);
+  fits_write_key (file, TDOUBLE, "BZERO", &zero, NULL, status);
+  if (how->has_blank)
+    fits_write_key (file, TLONGLONG, "BLANK", &blank, "stored value of pixels without a value", status);
+  fits_set_bscale (file, 1.0, 0.0, status);
+}
+
+static int
+to_stored (float value, const TfFrameWrite *how)
+{
+  if (isnan (value))
+    return how->has_blank ? (int)how->blank : 0;
+  double top = how->bitpix == 16 ? 32767.0 : 2147483647.0;
+  return (int)CLAMP (rint (((double)value - how->bzero) / how->bscale), -top - 1, top);
+}
+
+static void
+write_pixels (fitsfile *file, const float *pixels, guint width, guint height, const TfFrameWrite *how, int *status)
+{
+  g_autofree int *stored = how->bitpix > 0 ? g_new (int, width) : NULL;
+  for (guint row = 0; row < height && *status == 0; row++)
+    {
+      const float *line = pixels + (gsize)row * width;
+      LONGLONG first = (LONGLONG)row * width + 1;
+      if (stored == NULL)
+        {
+          fits_write_img (file, TFLOAT, first, width, (float *)line, status);
+          continue;
+        }
+      for (guint x = 0; x < width; x++)
+        stored[x] = to_stored (line[x], how);
+      fits_write_img (file, TINT, first, width, stored, status);
+    }
+}
+
+/* CHECKSUM and DATASUM without the time in their comments that CFITSIO would add: equal input, equal bytes. */
+static void
+write_sums (fitsfile *file, int *status)
+{
+  unsigned long data = 0, whole = 0;
+  char text[24];
+  fits_update_key (file, TSTRING, "CHECKSUM", "0000000000000000", "HDU checksum", status);
+  fits_update_key (file, TSTRING, "DATASUM", "0", "data unit checksum", status);
+  fits_flush_file (file, status);
+  fits_get_chksum (file, &data, &whole, status);
+  g_snprintf (text, sizeof text, "%lu", data);
+  fits_modify_key_str (file, "DATASUM", text, "&", status);
+  fits_flush_file (file, status);
+  fits_get_chksum (file, &data, &whole, status);
+  fits_encode_chksum (whole, TRUE, text);
+  fits_modify_key_str (file, "CHECKSUM", text, "&", status);
+}
+
+static int
+write_file (const char *path, const TfHeader *header, const float *pixels, guint width, guint height,
+            const TfFrameWrite *how)
+{
+  fitsfile *file = NULL;
+  int status = 0, closing = 0;
+  long axes[2] = { (long)width, (long)height };
+  long tile[2] = { (long)width, 1 };
+  fits_create_diskfile (&file, path, &status);
+  if (status != 0)
+    return status;
+  if (how->compress)
+    {
+      fits_set_compression_type (file, RICE_1, &status);
+      fits_set_tile_dim (file, 2, tile, &status);
+    }
+  fits_create_img (file, how->bitpix, 2, axes, &status);
+  write_scaling (file, how, &status);
+  write_header (file, header, &status);
+  if (!how->no_date)
+    fits_write_date (file, &status);
+  write_pixels (file, pixels, width, height, how, &status);
+  write_sums (file, &status);
+  fits_close_file (file, &closing);
+  return status != 0 ? status : closing;
+}
+
+static gboolean
+check_how (const TfFrameWrite *how, GError **error)
+{
+  gboolean integer = how->bitpix == 16 || how->bitpix == 32;
+  if ((integer && fabs (how->bscale) > 0 && isfinite (how->bzero)) || (how->bitpix == -32 && !how->compress))
+    return TRUE;
+  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_WRITE,
+               _ ("a frame is written as 16 or 32 bit integers with a scale, or as 32 bit floats without compression; "
+                  "asked was BITPIX %d"),
+               how->bitpix);
+  return FALSE;
+}
+
+gboolean
+tf_frame_write (const char *path, const TfHeader *header, const float *pixels, guint width, guint height,
+                const TfFrameWrite *how, GError **error)
+{
+  g_return_val_if_fail (path != NULL && pixels != NULL && how != NULL && width > 0 && height > 0, FALSE);
+  if (!check_how (how, error))
+    return FALSE;
+  g_autofree char *part = g_strdup_printf ("%s.%08x.part", path, g_random_int ());
+  int status = write_file (part, header, pixels, width, height, how);
+  if (status == 0 && g_rename (part, path) == 0)
+    return TRUE;
+  char reason[FLEN_STATUS] = "";
+  if (status != 0)
+    fits_get_errstatus (status, reason);
+  else
+    g_strlcpy (reason, g_strerror (errno), sizeof reason);
+  fits_clear_errmsg ();
+  g_unlink (part);
+  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_WRITE,
+               _ ("%s cannot be written: %s. See that the folder is there, may be written to, and has room"), path, reason);
+  return FALSE;
+}

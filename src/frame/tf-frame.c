@@ -1,0 +1,197 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-frame.h"
+#include "tf-frame-private.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "tf-noise-private.h"
+#include "tf-pyramid-private.h"
+
+struct _TfFrame
+{
+  TfFrameInfo *info;
+  TfPixels *pixels;
+  char *path;
+  int hdu;
+  TfNoise noise;
+  TfLevel levels[TF_MAX_LEVELS]; /* [0] is level 1 */
+  guint n_levels;
+};
+
+G_DEFINE_QUARK (tf-frame-error, tf_frame_error)
+
+TfFrame *
+tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu, const TfWork *work)
+{
+  TfFrame *frame = g_atomic_rc_box_new0 (TfFrame);
+  frame->info = info;
+  frame->pixels = pixels;
+  frame->path = g_strdup (path);
+  frame->hdu = hdu;
+  frame->noise.correlation = 1;
+  const float *values = tf_pixels_get (pixels);
+  const TfGeometry *g = &info->geometry;
+  frame->n_levels = tf_pyramid_make (values, g->width, g->height, work, frame->levels);
+  if (info->role != TF_ROLE_INTENSITY)
+    tf_noise_measure (values, g, &frame->noise);
+  return frame;
+}
+
+TfFrame *
+tf_frame_new (TfFrameInfo *info, const float *pixels, const TfWork *work)
+{
+  g_return_val_if_fail (info != NULL && pixels != NULL, NULL);
+  g_return_val_if_fail (info->geometry.width > 0 && info->geometry.height > 0, NULL);
+  gsize n = (gsize)info->geometry.width * info->geometry.height;
+  TfPixels *copy = tf_pixels_new (work != NULL ? work->pool : NULL, n);
+  if (copy == NULL)
+    {
+      tf_frame_info_free (info);
+      return NULL;
+    }
+  memcpy (tf_pixels_get (copy), pixels, n * sizeof (float));
+  return tf_frame_new_take (info, copy, "", 1, work);
+}
+
+TfFrame *
+tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const TfWork *work)
+{
+  const TfGeometry *old = &frame->info->geometry;
+  g_return_val_if_fail (geometry->width == old->width && geometry->height == old->height, NULL);
+  TfFrame *other = g_atomic_rc_box_new0 (TfFrame);
+  other->info = tf_frame_info_copy (frame->info);
+  other->info->geometry = *geometry;
+  other->pixels = tf_pixels_ref (frame->pixels);
+  other->path = g_strdup (frame->path);
+  other->hdu = frame->hdu;
+  other->n_levels = frame->n_levels;
+  for (guint k = 0; k < frame->n_levels; k++)
+    {
+      other->levels[k] = frame->levels[k];
+      tf_pixels_ref (other->levels[k].pixels);
+    }
+  other->noise.correlation = 1;
+  if (other->info->role != TF_ROLE_INTENSITY)
+    tf_noise_measure (tf_pixels_get (other->pixels), geometry, &other->noise);
+  return other;
+}
+
+TfFrame *
+tf_frame_ref (TfFrame *frame)
+{
+  return g_atomic_rc_box_acquire (frame);
+}
+
+static void
+frame_clear (gpointer data)
+{
+  TfFrame *frame = data;
+  for (guint k = 0; k < frame->n_levels; k++)
+    tf_pixels_unref (frame->levels[k].pixels);
+  tf_pixels_unref (frame->pixels);
+  tf_frame_info_free (frame->info);
+  g_free (frame->path);
+}
+
+void
+tf_frame_unref (TfFrame *frame)
+{
+  if (frame != NULL)
+    g_atomic_rc_box_release_full (frame, frame_clear);
+}
+
+const TfFrameInfo *
+tf_frame_get_info (const TfFrame *frame)
+{
+  return frame->info;
+}
+
+const TfGeometry *
+tf_frame_get_geometry (const TfFrame *frame)
+{
+  return &frame->info->geometry;
+}
+
+const char *
+tf_frame_get_path (const TfFrame *frame)
+{
+  return frame->path;
+}
+
+int
+tf_frame_get_hdu (const TfFrame *frame)
+{
+  return frame->hdu;
+}
+
+guint
+tf_frame_get_width (const TfFrame *frame)
+{
+  return frame->info->geometry.width;
+}
+
+guint
+tf_frame_get_height (const TfFrame *frame)
+{
+  return frame->info->geometry.height;
+}
+
+const float *
+tf_frame_get_pixels (const TfFrame *frame)
+{
+  return tf_pixels_get (frame->pixels);
+}
+
+double
+tf_frame_value (const TfFrame *frame, double x, double y)
+{
+  const TfGeometry *g = &frame->info->geometry;
+  if (!(x >= 0.5 && x < g->width + 0.5 && y >= 0.5 && y < g->height + 0.5))
+    return NAN;
+  gsize column = (gsize)floor (x - 0.5), row = (gsize)floor (y - 0.5);
+  return (double)tf_pixels_get (frame->pixels)[row * g->width + column];
+}
+
+const TfNotes *
+tf_frame_get_cautions (const TfFrame *frame)
+{
+  return frame->info->cautions;
+}
+
+const TfNoiseRing *
+tf_frame_get_noise (const TfFrame *frame, guint *n)
+{
+  if (n != NULL)
+    *n = frame->noise.n;
+  return frame->noise.rings;
+}
+
+double
+tf_frame_noise_at (const TfFrame *frame, double mu)
+{
+  return tf_noise_at (&frame->noise, mu);
+}
+
+double
+tf_frame_noise_correlation (const TfFrame *frame)
+{
+  return frame->noise.correlation;
+}
+
+const float *
+tf_frame_get_level (const TfFrame *frame, guint level, guint *width, guint *height)
+{
+  if (level > frame->n_levels)
+    return NULL;
+  const TfGeometry *g = &frame->info->geometry;
+  TfLevel zero = { frame->pixels, g->width, g->height };
+  const TfLevel *l = level == 0 ? &zero : &frame->levels[level - 1];
+  if (width != NULL)
+    *width = l->width;
+  if (height != NULL)
+    *height = l->height;
+  return tf_pixels_get (l->pixels);
+}
