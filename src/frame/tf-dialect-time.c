@@ -4,10 +4,38 @@
 #include "tf-info-private.h"
 
 #include <math.h>
-#include <stdio.h>
 #include <string.h>
 
 /* Habits of dates. All end as ISO text in UTC under DATE-OBS, DATE-AVG, DATE-END or T_OBS. */
+
+/* Reads @pattern from @text: a digit d stands for one to d digits, read into the next of @out; a blank for any blanks;
+ * all else for itself. Returns: where it ended, NULL when @text is not like that. */
+static const char *
+scan (const char *text, const char *pattern, int *out)
+{
+  if (text == NULL)
+    return NULL;
+  for (; *pattern != '\0'; pattern++)
+    {
+      if (*pattern == ' ')
+        text += strspn (text, " ");
+      else if (!g_ascii_isdigit (*pattern))
+        {
+          if (*text++ != *pattern)
+            return NULL;
+        }
+      else
+        {
+          int value = 0, n = 0;
+          for (; n < *pattern - '0' && g_ascii_isdigit (*text); n++)
+            value = value * 10 + (*text++ - '0');
+          if (n == 0)
+            return NULL;
+          *out++ = value;
+        }
+    }
+  return text;
+}
 
 static void
 set_time (TfHeader *header, const char *keyword, TfTime time)
@@ -21,12 +49,12 @@ set_time (TfHeader *header, const char *keyword, TfTime time)
 static double
 read_clock (const char *text)
 {
-  int hour = 0, minute = 0, used = 0;
-  if (text == NULL || sscanf (text, " %2d:%2d%n", &hour, &minute, &used) < 2 || hour < 0 || minute < 0 || hour > 24
-      || minute > 59)
+  int at[2];
+  const char *rest = scan (text, " 2:2", at);
+  if (rest == NULL || at[0] > 24 || at[1] > 59)
     return NAN;
-  double second = text[used] == ':' ? g_ascii_strtod (text + used + 1, NULL) : 0;
-  return second >= 0 && second < 61 ? hour * 3600.0 + minute * 60.0 + second : NAN;
+  double second = *rest == ':' ? g_ascii_strtod (rest + 1, NULL) : 0;
+  return second >= 0 && second < 61 ? at[0] * 3600.0 + at[1] * 60.0 + second : NAN;
 }
 
 /* DATE_OBS and the like; DATE-BEG where there is no DATE-OBS. */
@@ -55,15 +83,15 @@ tf_dialect_underscore_date (TfHeader *header, TfNotes *repairs)
 static TfTime
 read_dotted (const char *text)
 {
-  int year, month, day, hour, minute, used = 0;
-  if (sscanf (text, "%4d.%2d.%2d_%2d:%2d%n", &year, &month, &day, &hour, &minute, &used) < 5 || used == 0)
-    return TF_TIME_UNKNOWN;
-  const char *rest = text + used;
+  int at[5];
+  char *rest = (char *)scan (text, "4.2.2_2:2", at);
   double second = 0;
+  if (rest == NULL)
+    return TF_TIME_UNKNOWN;
   if (*rest == ':')
-    second = g_ascii_strtod (rest + 1, (char **)&rest);
+    second = g_ascii_strtod (rest + 1, &rest);
   TfTimeScale scale = strcmp (rest, "_TAI") == 0 ? TF_SCALE_TAI : strcmp (rest, "_TT") == 0 ? TF_SCALE_TT : TF_SCALE_UTC;
-  return tf_time_from_calendar (year, month, day, hour, minute, second, scale);
+  return tf_time_from_calendar (at[0], at[1], at[2], at[3], at[4], second, scale);
 }
 
 gboolean
@@ -88,9 +116,8 @@ tf_dialect_tai_text (TfHeader *header, TfNotes *repairs)
 static gboolean
 read_slashed (const char *text, int date[3])
 {
-  int used = 0;
-  return text != NULL && sscanf (text, " %4d/%2d/%2d %n", &date[0], &date[1], &date[2], &used) == 3 && date[0] > 1000
-         && text[used] == '\0';
+  const char *rest = scan (text, " 4/2/2 ", date);
+  return rest != NULL && *rest == '\0' && date[0] > 1000;
 }
 
 static TfTime
@@ -145,24 +172,21 @@ gboolean
 tf_dialect_two_digit_year (TfHeader *header, TfNotes *repairs)
 {
   const char *text = tf_header_get (header, "DATE-OBS");
-  int a, b, year, used = 0;
+  int at[3];
   if (text == NULL || strlen (text) != 8)
     return FALSE;
-  gboolean dashed = sscanf (text, "%2d-%2d-%2d%n", &a, &b, &year, &used) == 3 && used == 8;
-  gboolean slashed = !dashed && sscanf (text, "%2d/%2d/%2d%n", &a, &b, &year, &used) == 3 && used == 8;
-  if (!dashed && !slashed)
+  gboolean dashed = scan (text, "2-2-2", at) != NULL;
+  if (!dashed && scan (text, "2/2/2", at) == NULL)
     return FALSE;
-  int date[3] = { year + (year < 50 ? 2000 : 1900), dashed ? a : b, dashed ? b : a };
+  int date[3] = { at[2] + (at[2] < 50 ? 2000 : 1900), dashed ? at[0] : at[1], dashed ? at[1] : at[0] };
   return set_date (header, repairs, date);
 }
 
 static gboolean
 date_only (const TfHeader *header, int date[3])
 {
-  const char *text = tf_header_get (header, "DATE-OBS");
-  int used = 0;
-  return text != NULL && sscanf (text, "%4d-%2d-%2d%n", &date[0], &date[1], &date[2], &used) == 3 && used == 10
-         && text[used] == '\0';
+  const char *rest = scan (tf_header_get (header, "DATE-OBS"), "4-2-2", date);
+  return rest != NULL && *rest == '\0' && date[0] > 1000;
 }
 
 gboolean

@@ -5,6 +5,7 @@
 
 #include <fitsio.h>
 #include <glib/gi18n-lib.h>
+#include <math.h>
 #include <string.h>
 
 enum
@@ -95,7 +96,7 @@ map_compressed (TfHeader *header)
   for (guint k = 0; k < G_N_ELEMENTS (from); k++)
     {
       double value = tf_header_number (header, from[k]);
-      if (value == value && !tf_header_has (header, from[k] + 1)) /* NaN is not itself */
+      if (!isnan (value) && !tf_header_has (header, from[k] + 1))
         tf_header_set_number (header, from[k] + 1, value);
     }
 }

@@ -73,22 +73,35 @@ to_stored (float value, const TfFrameWrite *how)
   return (int)CLAMP (rint (((double)value - how->bzero) / how->bscale), -top - 1, top);
 }
 
+/* CFITSIO compresses a tile only from the type it is stored in. */
+static void
+write_integers (fitsfile *file, const float *line, LONGLONG first, guint width, const TfFrameWrite *how, int *status)
+{
+  g_autofree int *whole = g_new (int, width);
+  g_autofree short *half = how->bitpix == 16 ? g_new (short, width) : NULL;
+  for (guint x = 0; x < width; x++)
+    {
+      whole[x] = to_stored (line[x], how);
+      if (half != NULL)
+        half[x] = (short)whole[x];
+    }
+  if (half != NULL)
+    fits_write_img (file, TSHORT, first, width, half, status);
+  else
+    fits_write_img (file, TINT, first, width, whole, status);
+}
+
 static void
 write_pixels (fitsfile *file, const float *pixels, guint width, guint height, const TfFrameWrite *how, int *status)
 {
-  g_autofree int *stored = how->bitpix > 0 ? g_new (int, width) : NULL;
   for (guint row = 0; row < height && *status == 0; row++)
     {
       const float *line = pixels + (gsize)row * width;
       LONGLONG first = (LONGLONG)row * width + 1;
-      if (stored == NULL)
-        {
-          fits_write_img (file, TFLOAT, first, width, (float *)line, status);
-          continue;
-        }
-      for (guint x = 0; x < width; x++)
-        stored[x] = to_stored (line[x], how);
-      fits_write_img (file, TINT, first, width, stored, status);
+      if (how->bitpix > 0)
+        write_integers (file, line, first, width, how, status);
+      else
+        fits_write_img (file, TFLOAT, first, width, (float *)line, status);
     }
 }
 
@@ -98,8 +111,8 @@ write_sums (fitsfile *file, int *status)
 {
   unsigned long data = 0, whole = 0;
   char text[24];
-  fits_update_key (file, TSTRING, "CHECKSUM", "0000000000000000", "HDU checksum", status);
-  fits_update_key (file, TSTRING, "DATASUM", "0", "data unit checksum", status);
+  fits_update_key_str (file, "CHECKSUM", "0000000000000000", "HDU checksum", status);
+  fits_update_key_str (file, "DATASUM", "0", "data unit checksum", status);
   fits_flush_file (file, status);
   fits_get_chksum (file, &data, &whole, status);
   g_snprintf (text, sizeof text, "%lu", data);
@@ -157,7 +170,7 @@ tf_frame_write (const char *path, const TfHeader *header, const float *pixels, g
   g_return_val_if_fail (path != NULL && pixels != NULL && how != NULL && width > 0 && height > 0, FALSE);
   if (!check_how (how, error))
     return FALSE;
-  g_autofree char *part = g_strdup_printf ("%s.%08x.part", path, g_random_int ());
+  g_autofree char *mark = g_uuid_string_random (), *part = g_strdup_printf ("%s.%.8s.part", path, mark);
   int status = write_file (part, header, pixels, width, height, how);
   if (status == 0 && g_rename (part, path) == 0)
     return TRUE;

@@ -18,23 +18,29 @@ tf_header_radius_m (const TfHeader *header)
   return radius > 6.9e8 && radius < 7.05e8 ? radius : TF_RADIUS_MM * 1e6;
 }
 
-double
-tf_header_angular_radius (const TfHeader *header)
-{
-  double given = tf_header_number (header, "RSUN_OBS"), distance = tf_header_number (header, "DSUN_OBS");
-  if (given > 0)
-    return given * TF_ARCSEC;
-  if (!(distance > 0))
-    distance = tf_observer_earth (tf_header_time (header)).distance_m;
-  return asin (tf_header_radius_m (header) / distance);
-}
-
 /* A keyword's number if it can be true. */
 static double
 within (const TfHeader *header, const char *keyword, double low, double high)
 {
   double value = tf_header_number (header, keyword);
   return value >= low && value <= high ? value : NAN;
+}
+
+/* The distance that rules, m: @given unless the angular radius disagrees with it by more than 0.1 %. NaN without both. */
+static double
+ruling_distance (const TfHeader *header, double given)
+{
+  double derived = tf_header_radius_m (header) / sin (within (header, "RSUN_OBS", 100, 40000) * TF_ARCSEC);
+  return isnan (given) || fabs (derived / given - 1) > DISAGREE ? derived : given;
+}
+
+double
+tf_header_angular_radius (const TfHeader *header)
+{
+  double given = within (header, "DSUN_OBS", 1e9, 1e13), distance = ruling_distance (header, given);
+  if (isnan (distance))
+    distance = isnan (given) ? tf_observer_earth (tf_header_time (header)).distance_m : given;
+  return asin (tf_header_radius_m (header) / distance);
 }
 
 static void
@@ -64,27 +70,26 @@ complete_from_earth (TfObserver *o, const TfObserver *earth, guint given, TfFram
       o->stonyhurst_lon_deg = earth->stonyhurst_lon_deg;
     }
   o->source = given == 3 ? TF_OBSERVER_HEADER : given > 0 ? TF_OBSERVER_HEADER_EARTH : TF_OBSERVER_EARTH;
+  if (!tf_time_is_known (info->time))
+    return;
   if (given == 0)
     tf_notes_add (info->repairs, "observer-earth", "");
   else if (given < 3)
     tf_notes_add (info->repairs, "observer-part-earth", "");
 }
 
-/* The angular radius and the distance; @header_distance is what the header says, NaN when it does not. */
+/* Distance by the rule, with the note that says so. */
 static void
 settle_distance (const TfHeader *header, TfFrameInfo *info, TfObserver *o)
 {
-  double angle = within (header, "RSUN_OBS", 100, 40000) * TF_ARCSEC;
-  if (isnan (angle))
+  double angle = within (header, "RSUN_OBS", 100, 40000), ruling = ruling_distance (header, o->distance_m);
+  if (isnan (angle) || isnan (ruling) || fabs (ruling / o->distance_m - 1) < 1e-15)
     return;
-  double derived = tf_header_radius_m (header) / sin (angle);
   if (isnan (o->distance_m))
-    tf_notes_add (info->repairs, "distance-from-radius", "dd", angle / TF_ARCSEC, derived / TF_AU_M);
-  else if (fabs (derived / o->distance_m - 1) > DISAGREE)
-    tf_notes_add (info->cautions, "distance-disagrees", "ddd", o->distance_m / TF_AU_M, angle / TF_ARCSEC, derived / TF_AU_M);
+    tf_notes_add (info->repairs, "distance-from-radius", "dd", angle, ruling / TF_AU_M);
   else
-    return;
-  o->distance_m = derived;
+    tf_notes_add (info->cautions, "distance-disagrees", "ddd", o->distance_m / TF_AU_M, angle, ruling / TF_AU_M);
+  o->distance_m = ruling;
 }
 
 void

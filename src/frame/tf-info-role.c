@@ -240,16 +240,18 @@ has_name (const char *text)
   return run >= 3;
 }
 
-/* TELESCOP; with INSTRUME or CAMERA unless it names both already ("SDO/HMI"); ORIGIN before it when it is only a size. */
+/* TELESCOP; with INSTRUME or CAMERA unless it names both already ("SDO/HMI"); ORIGIN before it when it is only a size;
+ * the model's name where there is no telescope. */
 char *
 tf_info_read_instrument (const TfHeader *header)
 {
   const char *telescope = tf_header_get (header, "TELESCOP"), *origin = word_text (header, "ORIGIN");
   const char *instrument = word_text (header, "INSTRUME");
-  if (instrument == NULL)
-    instrument = word_text (header, "CAMERA");
+  const char *model = word_text (header, "MODEL"), *camera = word_text (header, "CAMERA");
+  if (instrument == NULL && camera != NULL && strchr (camera, ' ') == NULL)
+    instrument = camera;
   if (telescope == NULL || *telescope == '\0')
-    return g_strdup (instrument != NULL ? instrument : origin != NULL ? origin : "unknown");
+    return g_strdup (instrument != NULL ? instrument : origin != NULL ? origin : model != NULL ? model : "unknown");
   if (!has_name (telescope) && instrument == NULL && origin != NULL)
     return g_strdup_printf ("%s %s", origin, telescope);
   if (strchr (telescope, '/') != NULL || instrument == NULL || strstr (telescope, instrument) != NULL)

@@ -10,13 +10,13 @@
  * from below, so that the many pixels of an active disk that are not noise never enter. CORE is that median for a
  * normal distribution cut at CLIP: 2 Phi (CORE) - 1 = (2 Phi (CLIP) - 1) / 2. */
 #define CLIP 2.5
-#define CORE 0.664750
+#define CORE 0.66475116
 
 enum
 {
   WANTED = 300000, /* pixels looked at */
   FEWEST = 60,     /* pixels that make a ring */
-  REACH = 3,       /* longest lag of the autocorrelation, pixels */
+  REACH = 4,       /* longest lag of the autocorrelation, pixels */
   TURNS = 60,
 };
 
@@ -236,17 +236,32 @@ lags_add (Lags *lags, float *const rows[REACH + 1], guint n_rows, guint width)
         }
 }
 
-/* 1 + 2 sum of rho over half the lags; only what stands above three times its own error counts. */
+static gboolean
+is_far (guint dy, guint k)
+{
+  return dy == REACH || k == 0 || k == 2 * REACH;
+}
+
+/* 1 + 2 sum of rho over half the lags. What is still there at the longest lags is the Sun's own structure, not noise: it is
+ * taken off first. Only what stands above three times its own error counts. */
 static double
 lags_factor (const Lags *lags)
 {
-  double factor = 1;
+  double sum = 0, n = 0, factor = 1;
   for (guint dy = 0; dy <= REACH; dy++)
     for (guint k = 0; k <= 2 * REACH; k++)
+      if (is_far (dy, k) && lags->squares[dy][k] > 0)
+        {
+          sum += lags->product[dy][k] / lags->squares[dy][k];
+          n++;
+        }
+  double far = n > 0 ? CLAMP (sum / n, 0, 0.9) : 0;
+  for (guint dy = 0; dy < REACH; dy++)
+    for (guint k = 1; k < 2 * REACH; k++)
       {
         if (!(lags->squares[dy][k] > 0))
           continue;
-        double rho = lags->product[dy][k] / lags->squares[dy][k];
+        double rho = (lags->product[dy][k] / lags->squares[dy][k] - far) / (1 - far);
         if (rho > MAX (0.01, 3 / sqrt (lags->n[dy][k])))
           factor += 2 * rho;
       }
