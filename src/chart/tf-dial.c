@@ -18,6 +18,7 @@ typedef struct
 } Layout;
 
 #define PAD 4.0
+#define MIN_TEXT 8.0
 
 static double
 line_height (const TfChartStyle *style)
@@ -41,6 +42,30 @@ side_width (cairo_t *cr, const TfChartStyle *style)
   return MAX (MAX (a, b), style->text_pt * 4.5);
 }
 
+static double
+under_width (cairo_t *cr, const TfChartStyle *style)
+{
+  double words;
+  tf_chart_measure (cr, style, _ ("witnesses"), &words, NULL);
+  return words + 4 * PAD + 8 * style->text_pt * 0.38;
+}
+
+/* The words in a size in which they fit the width, not below MIN_TEXT. */
+static TfChartStyle
+fit_words (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, double width)
+{
+  TfChartStyle fit = *style;
+  for (; fit.text_pt > MIN_TEXT; fit.text_pt = MAX (fit.text_pt * 0.9, MIN_TEXT))
+    {
+      double name = 0;
+      if (dial->joy_name != NULL)
+        tf_chart_measure (cr, &fit, dial->joy_name, &name, NULL);
+      if (MAX (name + 2 * PAD, under_width (cr, &fit)) <= width)
+        break;
+    }
+  return fit;
+}
+
 static Layout
 lay_out (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea area)
 {
@@ -48,11 +73,11 @@ lay_out (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea area
   double line = line_height (style), letter = style->text_pt * 1.2;
   double bare = MIN (area.width, area.height) / 2 - PAD;
   at.radius = MAX (bare, 1.0);
-  if (bare < 2.2 * line)
+  if (!(style->text_pt > 0) || bare < 2.2 * line || under_width (cr, style) > area.width)
     return at;
   at.words = TRUE;
   double foot = dial->joy_name != NULL && isfinite (dial->joy_deg) ? line + 2 : 0;
-  double side = side_width (cr, style) + PAD;
+  double side = side_width (cr, style) + 2 * PAD;
   double beside = MIN (area.width / 2 - letter - PAD - side, (area.height - foot) / 2 - PAD);
   double under = MIN (area.width / 2 - letter - 2 * PAD, (area.height - foot - 2 * line) / 2 - PAD);
   at.beside = beside >= under;
@@ -226,7 +251,8 @@ tf_dial_draw (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea
   g_return_if_fail (cr != NULL && dial != NULL && style != NULL);
   if (!(area.width > 4) || !(area.height > 4))
     return;
-  Layout at = lay_out (cr, dial, style, area);
+  TfChartStyle fit = fit_words (cr, dial, style, area.width);
+  Layout at = lay_out (cr, dial, &fit, area);
   cairo_save (cr);
   cairo_rectangle (cr, area.x, area.y, area.width, area.height);
   cairo_clip (cr);
@@ -236,7 +262,7 @@ tf_dial_draw (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea
   if (isfinite (dial->bearing_deg))
     draw_axis (cr, &at, dial, style);
   if (at.words)
-    draw_words (cr, &at, dial, style);
+    draw_words (cr, &at, dial, &fit);
   cairo_restore (cr);
 }
 

@@ -24,6 +24,7 @@ typedef struct
   int witnesses[3];          /* 1, -1, 0 undecided, 2 absent */
 } TfDial;
 
+/** tf_dial_draw: words shrink to 8 units where the area is narrow; a small area, or text_pt 0, has none. */
 void tf_dial_draw (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea area);
 /** tf_dial_dup_description: what it shows now, in words, for a screen reader. */
 char *tf_dial_dup_description (const TfDial *dial);

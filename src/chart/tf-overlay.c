@@ -170,12 +170,9 @@ draw_rings (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, co
 }
 
 static void
-draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const double pole[2], int polarity,
-           gboolean chosen)
+draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, double x, double y, double radius,
+           int polarity)
 {
-  double x, y, radius = chosen ? 6 : 4.5;
-  if (!isfinite (pole[0] + pole[1]) || !overlay->project (pole[0], pole[1], &x, &y, overlay->data))
-    return;
   cairo_new_path (cr);
   cairo_arc (cr, x, y, radius + 1.5, 0, 2 * G_PI);
   if (polarity < 0) /* a ring stays open, so that the field can be seen in it */
@@ -188,19 +185,35 @@ draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, con
   tf_chart_pole (cr, style, x, y, radius, polarity);
 }
 
+/* Small regions get small poles, so that the two stay apart. */
+static void
+draw_poles (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item)
+{
+  TfChartStyle over = tf_chart_style (overlay->on_dark, style->contrast, style->text_pt);
+  const double *places[2] = { item->negative, item->positive };
+  double x[2], y[2], radius = item->chosen ? 6 : 4.5;
+  gboolean seen[2];
+  for (int k = 0; k < 2; k++)
+    seen[k] = isfinite (places[k][0] + places[k][1])
+              && overlay->project (places[k][0], places[k][1], &x[k], &y[k], overlay->data);
+  if (seen[0] && seen[1])
+    radius = CLAMP (0.3 * hypot (x[1] - x[0], y[1] - y[0]), 2.5, radius);
+  for (int k = 0; k < 2; k++)
+    if (seen[k])
+      draw_pole (cr, overlay, &over, x[k], y[k], radius, k == 0 ? -1 : 1);
+}
+
 static void
 draw_item_axis (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item)
 {
   TfVertex positive = { item->positive[0], item->positive[1] }, negative = { item->negative[0], item->negative[1] };
-  TfChartStyle over = tf_chart_style (overlay->on_dark, style->contrast, style->text_pt);
   g_autoptr (TfTrail) trail = tf_trail_new ();
   tf_trail_add_arc (trail, overlay, positive, negative, FALSE);
   cairo_new_path (cr);
   tf_trail_path (trail, cr);
   stroke_on (cr, tf_overlay_halo_colour (overlay), tf_overlay_line_colour (overlay, style, item),
              item->chosen ? 2 : 1.4, NULL, 0);
-  draw_pole (cr, overlay, &over, item->negative, -1, item->chosen);
-  draw_pole (cr, overlay, &over, item->positive, 1, item->chosen);
+  draw_poles (cr, overlay, style, item);
 }
 
 static void

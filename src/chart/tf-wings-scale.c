@@ -55,7 +55,7 @@ choose_step (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfAre
       double width;
       g_autofree char *label = dup_label (&steps[k], 2026, 12, 28);
       tf_chart_measure (cr, style, label, &width, NULL);
-      if (step_years (&steps[k]) / span * plot.width >= width * 1.5 + style->text_pt)
+      if (step_years (&steps[k]) / span * plot.width >= width + style->text_pt * 1.5)
         return &steps[k];
     }
   return &steps[G_N_ELEMENTS (steps) - 1];
