@@ -171,13 +171,16 @@ tf_notes_new (void)
   return g_ptr_array_new_with_free_func ((GDestroyNotify)tf_note_free);
 }
 
+/* An integer comes back from the store as a number and is the same argument still. */
 static gboolean
 same_arg (const Arg *a, const Arg *b)
 {
-  if (a->type != b->type)
+  if ((a->type == 's') != (b->type == 's'))
     return FALSE;
   if (a->type == 's')
     return g_strcmp0 (a->text, b->text) == 0;
+  if (isnan (a->value) || isnan (b->value))
+    return isnan (a->value) && isnan (b->value);
   return !(a->value < b->value) && !(a->value > b->value);
 }
 
