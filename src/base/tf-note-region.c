@@ -7,5 +7,47 @@
 
 /* One row a code, in the order of the code's name. */
 const TfNoteKind tf_note_kinds_region[] = {
+  { "floor-below-noise", TF_NOTE_CAUTION,
+    N_ ("The floor is {0:.1f} G in the observed field here, less than twice the noise of {1:.1f} G: noise adds to the flux. "
+        "Raise the floor or leave frames this near the limb out.") },
+  { "leader-unsure", TF_NOTE_CAUTION,
+    N_ ("The leading polarity is not sure: the witnesses differ, or the poles' longitudes differ by less than twice their "
+        "uncertainty. Look at the picture, or at a frame nearer central meridian.") },
+  { "near-limb", TF_NOTE_CAUTION,
+    N_ ("The region is near the limb (mu {0:.2f}): places and fluxes are less sure. Prefer a frame nearer central meridian.") },
+  { "near-limb-strong", TF_NOTE_STRONG,
+    N_ ("The region is very near the limb (mu {0:.2f}): a false polarity may show on its limbward side. Do not lean on "
+        "these numbers; take another frame.") },
+  { "no-strong-field", TF_NOTE_CAUTION,
+    N_ ("One or both polarities have no field well above the floor: a decayed region without a leader to go by. The second witness is "
+        "silent; look at earlier frames.") },
+  { "not-one-bipole", TF_NOTE_STRONG,
+    N_ ("The outline holds {0} strong pieces of one polarity each: it may not be one bipole. Split it, or leave a part out.") },
+  { "nothing-above-floor", TF_NOTE_STRONG,
+    N_ ("No field inside the outline reaches the floor of {0:.1f} G: there is nothing to measure. Lower the floor or look at "
+        "the outline.") },
+  { "outline-cut", TF_NOTE_CAUTION,
+    N_ ("{0:.0f} % of the outline's area lies off the frame or too near the limb and was left out: flux and poles are "
+        "those of the rest.") },
+  { "pole-pinned", TF_NOTE_INFO,
+    N_ ("A pole was placed by hand ({0}): tilt and separation are from that place, which has no uncertainty of its own.") },
+  { "poles-overlap", TF_NOTE_CAUTION,
+    N_ ("The polarities overlap (separation over sum of radii {0:.2f}): the axis depends on how the flux is spread. Compare "
+        "with the strong field alone.") },
+  { "saturated-core", TF_NOTE_CAUTION,
+    N_ ("{0} pixels share the extreme value of {1:.0f} G: the core seems saturated and the flux is a lower bound.") },
+  { "straddles-equator", TF_NOTE_CAUTION,
+    N_ ("The poles lie on opposite sides of the equator: the bearing is given, a tilt by hemisphere has no meaning.") },
+  { "tilt-unsure", TF_NOTE_STRONG,
+    N_ ("The polarities lie almost on top of each other (separation over sum of radii {0:.2f}): the tilt is given but left "
+        "out of the default Joy sample.") },
+  { "touches-missing-data", TF_NOTE_CAUTION,
+    N_ ("{0} pixels inside the outline have no value: flux and poles are those of the rest. Take another frame if the gap "
+        "matters.") },
+  { "unipolar", TF_NOTE_STRONG,
+    N_ ("The weaker polarity holds {0:.1f} % of the flux: the outline is unipolar. Widen it to the other polarity, or keep "
+        "it as unipolar.") },
+  { "weak-polarity", TF_NOTE_CAUTION,
+    N_ ("The weaker polarity holds only {0:.1f} % of the flux: its pole and the tilt are less sure.") },
   { NULL, TF_NOTE_INFO, NULL },
 };

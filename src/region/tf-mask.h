@@ -28,6 +28,9 @@ typedef struct
 
 typedef struct _TfMask TfMask; /* immutable, reference counted */
 
+/** tf_mask_outline: (transfer full): @outline carried to the frame's time by rotation law @law. On a map, whose columns are of
+ * different times, and where a time is unknown, it stays where it is drawn. */
+TfOutline *tf_mask_outline (const TfFrame *frame, const TfOutline *outline, guint law);
 /** tf_mask_new: @outline at any time: it is carried to the frame's by rotation law @law. An outline wholly behind the limb gives no pixels. */
 TfMask *tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law);
 TfMask *tf_mask_ref (TfMask *mask);

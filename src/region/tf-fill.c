@@ -1,0 +1,288 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-fill-private.h"
+
+#include <math.h>
+
+#include "tf-geometry.h"
+
+enum
+{
+  CELLS = 160,  /* of the grid, a side */
+  MAX_BITS = 63 /* left-out rings told apart */
+};
+/* Beyond this the gnomonic plane runs away: ask the outline itself. */
+static const double MAX_RADIUS_DEG = 75.0;
+
+typedef enum
+{
+  CELL_OUTSIDE,
+  CELL_INSIDE,
+  CELL_MIXED,
+} Cell;
+
+typedef struct
+{
+  double u0, v0, u1, v1; /* v0 < v1 */
+  guint64 bit;           /* which ring it belongs to: bit 0 all rings, bit k left-out ring k */
+} Edge;
+
+struct _TfFill
+{
+  TfOutline *outline;
+  gboolean plane; /* FALSE: too large, the outline itself is asked */
+  double west[3], north[3], centre[3];
+  double u_min, v_min, u_step, v_step;
+  GArray *edges;      /* Edge */
+  GArray *row_edges;  /* guint: edges that touch each row of cells */
+  guint row_first[CELLS + 1];
+  guint8 cell[CELLS][CELLS];
+};
+
+static double
+dot (const double a[3], const double b[3])
+{
+  return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
+}
+
+static gboolean
+to_plane (const TfFill *fill, const double unit[3], double *u, double *v)
+{
+  double c = dot (unit, fill->centre);
+  if (!(c > 0.05))
+    return FALSE;
+  *u = dot (unit, fill->west) / c;
+  *v = dot (unit, fill->north) / c;
+  return TRUE;
+}
+
+static void
+add_ring (TfFill *fill, const TfVertex *ring, guint n, guint64 bit)
+{
+  double u0 = 0.0, v0 = 0.0, u1 = 0.0, v1 = 0.0, unit[3];
+  tf_sphere_unit (ring[n - 1].lon_deg, ring[n - 1].lat_deg, unit);
+  if (!to_plane (fill, unit, &u0, &v0))
+    fill->plane = FALSE;
+  for (guint k = 0; k < n && fill->plane; k++)
+    {
+      tf_sphere_unit (ring[k].lon_deg, ring[k].lat_deg, unit);
+      if (!to_plane (fill, unit, &u1, &v1))
+        fill->plane = FALSE;
+      else if (v0 < v1)
+        g_array_append_val (fill->edges, ((Edge){ u0, v0, u1, v1, bit }));
+      else if (v1 < v0)
+        g_array_append_val (fill->edges, ((Edge){ u1, v1, u0, v0, bit }));
+      u0 = u1;
+      v0 = v1;
+    }
+}
+
+static void
+add_rings (TfFill *fill)
+{
+  guint n;
+  for (guint k = 0; k < tf_outline_get_n_rings (fill->outline); k++)
+    {
+      const TfVertex *ring = tf_outline_get_ring (fill->outline, k, FALSE, &n);
+      add_ring (fill, ring, n, 1);
+    }
+  for (guint k = 0; k < tf_outline_get_n_left_out (fill->outline); k++)
+    {
+      const TfVertex *ring = tf_outline_get_ring (fill->outline, k, TRUE, &n);
+      add_ring (fill, ring, n, (guint64)1 << (1 + k % MAX_BITS));
+    }
+}
+
+static void
+set_grid (TfFill *fill)
+{
+  double u0 = INFINITY, u1 = -INFINITY, v0 = INFINITY, v1 = -INFINITY;
+  for (guint k = 0; k < fill->edges->len; k++)
+    {
+      const Edge *e = &g_array_index (fill->edges, Edge, k);
+      u0 = MIN (u0, MIN (e->u0, e->u1));
+      u1 = MAX (u1, MAX (e->u0, e->u1));
+      v0 = MIN (v0, e->v0);
+      v1 = MAX (v1, e->v1);
+    }
+  if (!(u1 > u0) || !(v1 > v0))
+    {
+      fill->plane = FALSE;
+      return;
+    }
+  fill->u_step = (u1 - u0) / (CELLS - 2);
+  fill->v_step = (v1 - v0) / (CELLS - 2);
+  fill->u_min = u0 - fill->u_step;
+  fill->v_min = v0 - fill->v_step;
+}
+
+static guint
+clamp_cell (double x)
+{
+  return (guint)CLAMP (x, 0.0, (double)(CELLS - 1));
+}
+
+/* Marks the cells of one row that an edge may touch, one cell to spare on each side. */
+static void
+mark_edge (TfFill *fill, const Edge *e, guint row)
+{
+  double lo = fill->v_min + row * fill->v_step, hi = lo + fill->v_step;
+  double slope = (e->u1 - e->u0) / (e->v1 - e->v0);
+  double ua = e->u0 + slope * (CLAMP (lo, e->v0, e->v1) - e->v0);
+  double ub = e->u0 + slope * (CLAMP (hi, e->v0, e->v1) - e->v0);
+  guint first = clamp_cell ((MIN (ua, ub) - fill->u_min) / fill->u_step - 1.0);
+  guint last = clamp_cell ((MAX (ua, ub) - fill->u_min) / fill->u_step + 1.0);
+  for (guint c = first; c <= last; c++)
+    fill->cell[row][c] = CELL_MIXED;
+}
+
+static gboolean
+row_touches (const TfFill *fill, const Edge *e, guint row)
+{
+  double lo = fill->v_min + (row - 0.01) * fill->v_step, hi = lo + 1.02 * fill->v_step;
+  return e->v1 >= lo && e->v0 <= hi;
+}
+
+static gboolean
+test_edges (const TfFill *fill, guint row, double u, double v)
+{
+  const guint *index = (const guint *)(const void *)fill->row_edges->data;
+  const Edge *edges = (const Edge *)(const void *)fill->edges->data;
+  guint64 bits = 0;
+  for (guint k = fill->row_first[row]; k < fill->row_first[row + 1]; k++)
+    {
+      const Edge *e = &edges[index[k]];
+      if (v >= e->v0 && v < e->v1 && u < e->u0 + (e->u1 - e->u0) * ((v - e->v0) / (e->v1 - e->v0)))
+        bits ^= e->bit;
+    }
+  return bits == 1;
+}
+
+/* A run of unmarked cells has one state: no edge passes between them. */
+static void
+settle_row (TfFill *fill, guint row)
+{
+  double v = fill->v_min + (row + 0.5) * fill->v_step;
+  guint8 last = CELL_MIXED;
+  for (guint c = 0; c < CELLS; c++)
+    {
+      if (fill->cell[row][c] != CELL_MIXED)
+        {
+          if (last == CELL_MIXED)
+            last = test_edges (fill, row, fill->u_min + (c + 0.5) * fill->u_step, v) ? CELL_INSIDE
+                                                                                       : CELL_OUTSIDE;
+          fill->cell[row][c] = last;
+        }
+      last = fill->cell[row][c];
+    }
+}
+
+static void
+make_grid (TfFill *fill)
+{
+  for (guint row = 0; row < CELLS; row++)
+    {
+      fill->row_first[row] = fill->row_edges->len;
+      for (guint k = 0; k < fill->edges->len; k++)
+        {
+          const Edge *e = &g_array_index (fill->edges, Edge, k);
+          if (!row_touches (fill, e, row))
+            continue;
+          g_array_append_val (fill->row_edges, k);
+          mark_edge (fill, e, row);
+        }
+      fill->row_first[row + 1] = fill->row_edges->len;
+      settle_row (fill, row);
+    }
+}
+
+TfFill *
+tf_fill_new (const TfOutline *outline)
+{
+  g_return_val_if_fail (outline != NULL, NULL);
+  TfFill *fill = g_new0 (TfFill, 1);
+  double lon, lat, radius;
+  fill->outline = tf_outline_ref ((TfOutline *)outline);
+  fill->edges = g_array_new (FALSE, FALSE, sizeof (Edge));
+  fill->row_edges = g_array_new (FALSE, FALSE, sizeof (guint));
+  tf_outline_get_cap (outline, &lon, &lat, &radius);
+  fill->plane = radius < MAX_RADIUS_DEG;
+  tf_sphere_unit (lon, lat, fill->centre);
+  tf_sphere_unit (lon + 90.0, 0.0, fill->west);
+  tf_sphere_unit (lat >= 0.0 ? lon + 180.0 : lon, 90.0 - fabs (lat), fill->north);
+  if (lat < 0.0)
+    tf_sphere_unit (lon, lat + 90.0, fill->north);
+  if (fill->plane)
+    add_rings (fill);
+  if (fill->plane)
+    set_grid (fill);
+  if (fill->plane)
+    make_grid (fill);
+  return fill;
+}
+
+void
+tf_fill_free (TfFill *fill)
+{
+  if (fill == NULL)
+    return;
+  tf_outline_unref (fill->outline);
+  g_array_unref (fill->edges);
+  g_array_unref (fill->row_edges);
+  g_free (fill);
+}
+
+gboolean
+tf_fill_contains (const TfFill *fill, const double unit[3])
+{
+  if (!fill->plane)
+    return isfinite (unit[0]) && tf_outline_contains (fill->outline, unit);
+  double u, v;
+  if (!to_plane (fill, unit, &u, &v))
+    return FALSE;
+  double c = (u - fill->u_min) / fill->u_step, r = (v - fill->v_min) / fill->v_step;
+  if (!(c >= 0.0 && c < CELLS && r >= 0.0 && r < CELLS))
+    return FALSE;
+  guint8 cell = fill->cell[(guint)r][(guint)c];
+  if (cell == CELL_MIXED)
+    return test_edges (fill, (guint)r, u, v);
+  return cell == CELL_INSIDE;
+}
+
+/* The whole sphere by rows of latitude, for outlines too large for the plane. */
+static void
+sample_sphere (const TfFill *fill, guint n, TfFillFunc func, gpointer data)
+{
+  for (guint j = 0; j < n; j++)
+    for (guint k = 0; k < n; k++)
+      {
+        double unit[3];
+        double sin_lat = (j + 0.5) / n * 2.0 - 1.0;
+        tf_sphere_unit ((k + 0.5) * 360.0 / n, asin (sin_lat) / (G_PI / 180.0), unit);
+        if (tf_fill_contains (fill, unit))
+          func (unit, 1.0, data);
+      }
+}
+
+void
+tf_fill_sample (const TfFill *fill, guint n, TfFillFunc func, gpointer data)
+{
+  if (!fill->plane)
+    {
+      sample_sphere (fill, n, func, data);
+      return;
+    }
+  for (guint j = 0; j < n; j++)
+    for (guint k = 0; k < n; k++)
+      {
+        double unit[3];
+        double u = fill->u_min + fill->u_step * (1.0 + (k + 0.5) * (CELLS - 2) / n);
+        double v = fill->v_min + fill->v_step * (1.0 + (j + 0.5) * (CELLS - 2) / n);
+        double norm = 1.0 / sqrt (1.0 + u * u + v * v);
+        for (guint i = 0; i < 3; i++)
+          unit[i] = (fill->centre[i] + u * fill->west[i] + v * fill->north[i]) * norm;
+        if (tf_fill_contains (fill, unit))
+          func (unit, norm * norm * norm, data);
+      }
+}

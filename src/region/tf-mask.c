@@ -1,0 +1,193 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-mask.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "tf-fill-private.h"
+#include "tf-mask-box-private.h"
+
+enum { CUT_SAMPLES = 32 };
+
+struct _TfMask
+{
+  TfMaskBox box;
+  GArray *pixels; /* TfMaskPixel, row by row */
+  gint32 *grid;
+  guint missing;
+  double cut;
+};
+
+typedef double Unit[3];
+
+/* Room for one row of the box. */
+typedef struct
+{
+  Unit *unit;
+  double *mu, *area;
+} Row;
+
+typedef struct
+{
+  const TfGeometry *geometry;
+  double mu_min;
+  double all, seen;
+} Cut;
+
+static void
+add_sample (const double unit[3], double weight, gpointer data)
+{
+  Cut *cut = data;
+  double lon, lat, x, y, mu;
+  cut->all += weight;
+  tf_sphere_lonlat (unit, &lon, &lat);
+  if (!tf_geometry_sun_to_pixel (cut->geometry, lon, lat, &x, &y, &mu))
+    return;
+  gboolean map = tf_geometry_is_map (cut->geometry);
+  if (x >= 0.5 && x <= cut->geometry->width + 0.5 && y >= 0.5 && y <= cut->geometry->height + 0.5
+      && (map || mu >= cut->mu_min))
+    cut->seen += weight;
+}
+
+static double
+find_cut (const TfGeometry *geometry, const TfFill *fill, const TfMaskBox *box, double mu_min)
+{
+  Cut cut = { geometry, mu_min, 0.0, 0.0 };
+  if (box->whole)
+    return 0.0;
+  if (box->width == 0)
+    return 1.0;
+  tf_fill_sample (fill, CUT_SAMPLES, add_sample, &cut);
+  return cut.all > 0.0 ? 1.0 - cut.seen / cut.all : 0.0;
+}
+
+static void
+fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, guint y, const Row *row)
+{
+  const TfGeometry *g = tf_frame_get_geometry (frame);
+  const TfMaskBox *box = &mask->box;
+  gboolean map = tf_geometry_is_map (g);
+  const float *field = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
+  gint32 *grid = mask->grid + (gsize)(y - box->y0) * box->width;
+  tf_geometry_row_sun (g, y + 1.0, box->x0 + 1.0, box->width, row->unit, row->mu, row->area);
+  for (guint k = 0; k < box->width; k++)
+    {
+      double mu = map ? 1.0 : row->mu[k];
+      if (!(mu >= mu_min) || !tf_fill_contains (fill, row->unit[k]))
+        continue;
+      if (!isfinite (field[k]))
+        {
+          mask->missing++;
+          continue;
+        }
+      grid[k] = (gint32)mask->pixels->len;
+      g_array_set_size (mask->pixels, mask->pixels->len + 1);
+      TfMaskPixel *pixel = &g_array_index (mask->pixels, TfMaskPixel, mask->pixels->len - 1);
+      pixel->x = box->x0 + k;
+      pixel->y = y;
+      pixel->field = field[k];
+      pixel->mu = (float)mu;
+      pixel->area_mm2 = row->area[k];
+      memcpy (pixel->unit, row->unit[k], sizeof pixel->unit);
+    }
+}
+
+static void
+fill_rows (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min)
+{
+  guint n = mask->box.width;
+  Row row = { .unit = g_new (Unit, n), .mu = g_new (double, n), .area = g_new (double, n) };
+  for (guint y = 0; y < mask->box.height; y++)
+    fill_row (mask, frame, fill, mu_min, mask->box.y0 + y, &row);
+  g_free (row.unit);
+  g_free (row.mu);
+  g_free (row.area);
+}
+
+TfOutline *
+tf_mask_outline (const TfFrame *frame, const TfOutline *outline, guint law)
+{
+  TfTime time = tf_frame_get_info (frame)->time;
+  if (tf_geometry_is_map (tf_frame_get_geometry (frame)) || !tf_time_is_known (time)
+      || !tf_time_is_known (tf_outline_get_time (outline)))
+    return tf_outline_ref ((TfOutline *)outline);
+  TfOutline *carried = tf_outline_carry (outline, time, law);
+  return carried != NULL ? carried : tf_outline_ref ((TfOutline *)outline);
+}
+
+TfMask *
+tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law)
+{
+  g_return_val_if_fail (frame != NULL && outline != NULL, NULL);
+  TfMask *mask = g_atomic_rc_box_new0 (TfMask);
+  const TfGeometry *g = tf_frame_get_geometry (frame);
+  g_autoptr (TfOutline) here = tf_mask_outline (frame, outline, law);
+  g_autoptr (TfFill) fill = tf_fill_new (here);
+  mask->box = tf_mask_box (g, here, fill, mu_min);
+  gsize n = (gsize)mask->box.width * mask->box.height;
+  mask->pixels = g_array_sized_new (FALSE, FALSE, sizeof (TfMaskPixel), (guint)n);
+  mask->grid = g_new (gint32, MAX (n, 1));
+  memset (mask->grid, 0xff, n * sizeof *mask->grid);
+  mask->cut = find_cut (g, fill, &mask->box, mu_min);
+  if (n > 0)
+    fill_rows (mask, frame, fill, mu_min);
+  return mask;
+}
+
+TfMask *
+tf_mask_ref (TfMask *mask)
+{
+  return g_atomic_rc_box_acquire (mask);
+}
+
+static void
+clear (gpointer data)
+{
+  TfMask *mask = data;
+  g_array_unref (mask->pixels);
+  g_free (mask->grid);
+}
+
+void
+tf_mask_unref (TfMask *mask)
+{
+  if (mask != NULL)
+    g_atomic_rc_box_release_full (mask, clear);
+}
+
+guint
+tf_mask_get_n (const TfMask *mask)
+{
+  return mask->pixels->len;
+}
+
+const TfMaskPixel *
+tf_mask_get (const TfMask *mask, guint k)
+{
+  g_return_val_if_fail (k < mask->pixels->len, NULL);
+  return &g_array_index (mask->pixels, TfMaskPixel, k);
+}
+
+guint
+tf_mask_get_missing (const TfMask *mask)
+{
+  return mask->missing;
+}
+
+double
+tf_mask_get_cut (const TfMask *mask)
+{
+  return mask->cut;
+}
+
+const gint32 *
+tf_mask_get_grid (const TfMask *mask, guint *x0, guint *y0, guint *width, guint *height)
+{
+  *x0 = mask->box.x0;
+  *y0 = mask->box.y0;
+  *width = mask->box.width;
+  *height = mask->box.height;
+  return mask->grid;
+}

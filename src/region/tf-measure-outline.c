@@ -1,0 +1,239 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+
+/* The outline and floor terms of the uncertainty.
+ *
+ * Outline: the region is measured in 16 fixed deformations of its outline (shift, scale, first three harmonics); the
+ * term is 1.4826 times the median absolute deviation. Pixels are read once, in a wider outline that holds them all; only
+ * those above the floor are kept, so that a deformation costs one inside test a pixel.
+ * Floor: root mean square of the changes at floors 1 +- step.
+ */
+
+#include <math.h>
+#include <stdlib.h>
+
+#include "tf-constants.h"
+#include "tf-fill-private.h"
+#include "tf-measure-private.h"
+
+enum { DEFORMATIONS = 16 };
+
+typedef struct
+{
+  double west, north, scale; /* shift in amplitudes; change of scale in amplitudes over the radius */
+  double harmonic[3];        /* amplitudes */
+  double phase_deg[3];
+} Deformation;
+
+static const double DIAGONAL = 0.70710678118654752;
+
+static const Deformation deformations[DEFORMATIONS] = {
+  { .west = 1.0 },
+  { .west = -1.0 },
+  { .north = 1.0 },
+  { .north = -1.0 },
+  { .scale = 1.0 },
+  { .scale = -1.0 },
+  { .west = DIAGONAL, .north = DIAGONAL, .harmonic = { 0.0, 0.5, 0.0 }, .phase_deg = { 0.0, 45.0, 0.0 } },
+  { .west = -DIAGONAL, .north = DIAGONAL, .harmonic = { 0.0, 0.5, 0.0 }, .phase_deg = { 0.0, 135.0, 0.0 } },
+  { .harmonic = { 0.0, 1.0, 0.0 } },
+  { .harmonic = { 0.0, -1.0, 0.0 } },
+  { .harmonic = { 0.0, 1.0, 0.0 }, .phase_deg = { 0.0, 45.0, 0.0 } },
+  { .harmonic = { 0.0, -1.0, 0.0 }, .phase_deg = { 0.0, 45.0, 0.0 } },
+  { .harmonic = { 0.0, 0.0, 1.0 } },
+  { .harmonic = { 0.0, 0.0, -1.0 } },
+  { .harmonic = { 1.0, 0.0, 0.0 }, .phase_deg = { 45.0, 0.0, 0.0 } },
+  { .harmonic = { 1.0, 0.0, 0.0 }, .phase_deg = { 225.0, 0.0, 0.0 } },
+};
+
+static TfOutline *
+deform (const TfOutline *outline, const Deformation *d, double amplitude, double radius)
+{
+  double size[3], phase[3];
+  for (guint k = 0; k < 3; k++)
+    {
+      size[k] = d->harmonic[k] * amplitude;
+      phase[k] = d->phase_deg[k] * TF_DEG;
+    }
+  double scale = MAX (0.1, 1.0 + d->scale * amplitude / radius);
+  return tf_outline_deform (outline, d->west * amplitude, d->north * amplitude, scale, size, phase);
+}
+
+static gint
+compare (gconstpointer a, gconstpointer b)
+{
+  double x = *(const double *)a, y = *(const double *)b;
+  return (x > y) - (x < y);
+}
+
+/* Median of the finite values, which are put in order. */
+static double
+median (double *values, guint n)
+{
+  guint m = 0;
+  for (guint k = 0; k < n; k++)
+    if (isfinite (values[k]))
+      values[m++] = values[k];
+  if (m == 0)
+    return NAN;
+  qsort (values, m, sizeof *values, compare);
+  return m % 2 == 1 ? values[m / 2] : 0.5 * (values[m / 2 - 1] + values[m / 2]);
+}
+
+/* @values: differences from the outline as drawn. */
+static double
+deviation (double values[DEFORMATIONS])
+{
+  double middle = median (values, DEFORMATIONS);
+  for (guint k = 0; k < DEFORMATIONS; k++)
+    values[k] = fabs (values[k] - middle);
+  return 1.4826 * median (values, DEFORMATIONS);
+}
+
+/* Places: the differences are distances already: the middle one, as for one axis. */
+static double
+middle_distance (const double values[DEFORMATIONS])
+{
+  double copy[DEFORMATIONS];
+  for (guint k = 0; k < DEFORMATIONS; k++)
+    copy[k] = values[k];
+  return 1.4826 * median (copy, DEFORMATIONS);
+}
+
+/* The pixels above the floor of all deformations together. */
+typedef struct
+{
+  GArray *pixels; /* TfMaskPixel */
+  GArray *flux;   /* double: signed, Mx */
+} Kept;
+
+static void
+keep_pixels (Kept *kept, const TfRegionSamples *samples)
+{
+  kept->pixels = g_array_new (FALSE, FALSE, sizeof (TfMaskPixel));
+  kept->flux = g_array_new (FALSE, FALSE, sizeof (double));
+  for (guint k = 0; k < samples->n; k++)
+    {
+      const TfSampled *s = &samples->samples[k];
+      double flux = s->field * s->weight;
+      if (fabsf (s->field) < s->floor || !(fabs (flux) > 0.0))
+        continue;
+      g_array_append_val (kept->pixels, samples->pixels[k]);
+      g_array_append_val (kept->flux, flux);
+    }
+}
+
+static void
+sum_inside (const Kept *kept, const TfOutline *outline, TfSum sums[2])
+{
+  g_autoptr (TfFill) fill = tf_fill_new (outline);
+  for (guint k = 0; k < kept->pixels->len; k++)
+    {
+      const TfMaskPixel *pixel = &g_array_index (kept->pixels, TfMaskPixel, k);
+      double flux = g_array_index (kept->flux, double, k);
+      if (tf_fill_contains (fill, pixel->unit))
+        tf_sum_add (&sums[flux > 0.0 ? TF_POSITIVE : TF_NEGATIVE], pixel, fabs (flux));
+    }
+}
+
+/* Left-out areas of the wide cap are not cut: each deformation has its own. */
+static void
+open_kept (Kept *kept, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params, double reach)
+{
+  double lon, lat, radius;
+  tf_outline_get_cap (outline, &lon, &lat, &radius);
+  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_outline_get_time (outline), lon, lat, MIN (radius + reach, 80.0), 0);
+  g_autoptr (TfMask) mask = tf_mask_new (frame, cap, params->mu_min, (guint)params->law);
+  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params);
+  keep_pixels (kept, samples);
+}
+
+typedef struct
+{
+  double flux[2][DEFORMATIONS], place[2][DEFORMATIONS];
+  double tilt[DEFORMATIONS], separation[DEFORMATIONS], dx[DEFORMATIONS], dipole[DEFORMATIONS];
+} Trials;
+
+static void
+settle (Trials *trials, TfSpread *spread)
+{
+  for (guint sign = 0; sign < 2; sign++)
+    {
+      spread->flux[sign] = deviation (trials->flux[sign]);
+      spread->place[sign] = middle_distance (trials->place[sign]);
+    }
+  spread->tilt = deviation (trials->tilt);
+  spread->separation = deviation (trials->separation);
+  spread->dx = deviation (trials->dx);
+  spread->dipole = deviation (trials->dipole);
+}
+
+void
+tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
+                        TfSpread *spread)
+{
+  double lon, lat, radius, radius_mm = tf_frame_get_geometry (frame)->radius_mm;
+  tf_outline_get_cap (outline, &lon, &lat, &radius);
+  double amplitude = MAX (params->outline_deg, params->outline_share * radius);
+  gboolean circle = params->tilt_form == 1;
+  Kept kept;
+  Trials trials;
+  TfSum sums[2] = { 0 };
+  TfAxis base, axis;
+  open_kept (&kept, frame, outline, params, 2.0 * amplitude);
+  sum_inside (&kept, outline, sums);
+  tf_axis_from_sums (&base, sums, outline, radius_mm, circle);
+  for (guint k = 0; k < DEFORMATIONS; k++)
+    {
+      g_autoptr (TfOutline) changed = deform (outline, &deformations[k], amplitude, MAX (radius, 0.1));
+      TfSum inside[2] = { 0 };
+      TfSpread d;
+      sum_inside (&kept, changed, inside);
+      tf_axis_from_sums (&axis, inside, outline, radius_mm, circle);
+      tf_axis_difference (&axis, &base, &d);
+      for (guint sign = 0; sign < 2; sign++)
+        {
+          trials.flux[sign][k] = d.flux[sign];
+          trials.place[sign][k] = d.place[sign];
+        }
+      trials.tilt[k] = d.tilt;
+      trials.separation[k] = d.separation;
+      trials.dx[k] = d.dx;
+      trials.dipole[k] = d.dipole;
+    }
+  settle (&trials, spread);
+  g_array_unref (kept.pixels);
+  g_array_unref (kept.flux);
+}
+
+static double
+half (double up, double down)
+{
+  if (isnan (up) || isnan (down))
+    return NAN;
+  return sqrt (0.5 * (up * up + down * down));
+}
+
+void
+tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
+                      const TfOutline *outline, TfSpread *spread)
+{
+  double radius = tf_frame_get_geometry (samples->frame)->radius_mm;
+  gboolean circle = samples->params->tilt_form == 1;
+  TfAxis low, high;
+  TfSpread up, down;
+  tf_axis_from_sums (&low, sums->at[TF_LEVEL_LOW], outline, radius, circle);
+  tf_axis_from_sums (&high, sums->at[TF_LEVEL_HIGH], outline, radius, circle);
+  tf_axis_difference (&high, axis, &up);
+  tf_axis_difference (&low, axis, &down);
+  for (guint sign = 0; sign < 2; sign++)
+    {
+      spread->flux[sign] = half (up.flux[sign], down.flux[sign]);
+      spread->place[sign] = half (up.place[sign], down.place[sign]);
+    }
+  spread->tilt = half (up.tilt, down.tilt);
+  spread->separation = half (up.separation, down.separation);
+  spread->dx = half (up.dx, down.dx);
+  spread->dipole = half (up.dipole, down.dipole);
+}

@@ -1,0 +1,132 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* What the files of the measurement share.
+ *
+ * Field, floor and sigma of a sample are in (scaled) gauss as observed, whatever field is used; a sample's weight turns gauss
+ * as observed into Mx: area / mu for the radial field of a line-of-sight frame, else area. So a floor on the radial field is
+ * floor * mu here, and noise is always that of the observed field. Index 0 is the positive polarity, 1 the negative.
+ */
+
+#include <glib.h>
+
+#include "tf-measure.h"
+
+G_BEGIN_DECLS
+
+enum
+{
+  TF_POSITIVE,
+  TF_NEGATIVE
+};
+
+/* Levels of |field| / floor at which sums are kept; each holds all that is above it. */
+typedef enum
+{
+  TF_LEVEL_LOW,    /* floor * (1 - step) */
+  TF_LEVEL_BASE,   /* floor */
+  TF_LEVEL_HIGH,   /* floor * (1 + step) */
+  TF_LEVEL_STRONG, /* floor * strong_floors */
+  TF_N_LEVELS
+} TfFloorLevel;
+
+typedef struct
+{
+  float field, floor, sigma;
+  double weight; /* Mx a gauss as observed */
+} TfSampled;
+
+/* A mask's pixels made ready to be summed. */
+typedef struct
+{
+  const TfFrame *frame;
+  const TfMask *mask;
+  const TfMeasureParams *params;
+  guint n;
+  const TfMaskPixel *pixels;
+  TfSampled *samples;
+  double mean_mu;   /* maps: 1 */
+  double mean_abs_z; /* of the unit vectors */
+} TfRegionSamples;
+
+typedef struct
+{
+  double flux;    /* Mx */
+  double sum[3];  /* of flux * unit vector */
+  double area;    /* Mm2 */
+  double area_z;  /* of area * sin (latitude) */
+  guint n;
+} TfSum;
+
+typedef struct
+{
+  TfSum at[TF_N_LEVELS][2];
+} TfSums;
+
+/* Two poles and what follows from them. */
+typedef struct
+{
+  gboolean has[2], pinned[2];
+  double flux[2];
+  double unit[2][3], lon[2], lat[2];
+  double radius[2];    /* rms about the pole, deg */
+  int west;            /* index of the western pole; -1 without two poles */
+  double dx, dy;       /* leading - following: longitude * cos (mean latitude), latitude; deg */
+  double bearing, tilt, separation;
+  double dipole;       /* G */
+} TfAxis;
+
+/* One-sigma of one term. */
+typedef struct
+{
+  double flux[2], place[2], tilt, separation, dx, dipole;
+} TfSpread;
+
+/* tf-measure-sums.c */
+TfRegionSamples *tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params);
+void tf_region_samples_free (TfRegionSamples *samples);
+void tf_region_sums (const TfRegionSamples *samples, TfSums *sums);
+void tf_sum_add (TfSum *sum, const TfMaskPixel *pixel, double flux);
+/** tf_region_floor: as observed; tf_region_sigma: of a pixel; at mu (maps: sin |latitude|). */
+double tf_region_even_floor (const TfFrame *frame, const TfMeasureParams *params);
+double tf_region_scale (const TfMeasureParams *params);
+double tf_region_sigma (const TfFrame *frame, double mu, double abs_z);
+gboolean tf_region_divides (const TfFrame *frame, const TfMeasureParams *params);
+void tf_axis_from_sums (TfAxis *axis, const TfSum sums[2], const TfOutline *outline, double radius_mm,
+                        gboolean great_circle);
+/** tf_axis_difference: absolute differences, axial for the tilt; NaN where one has no value. */
+void tf_axis_difference (const TfAxis *a, const TfAxis *b, TfSpread *spread);
+
+/* tf-measure-noise.c */
+/** tf_region_noise: the noise term; @noise_flux: unsigned flux expected of noise alone, Mx. */
+void tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double sine_mean, TfSpread *spread,
+                      double *noise_flux);
+/** tf_region_realise: the same from seeded realisations of the smoothed field. */
+void tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfSpread *spread);
+/** tf_region_smooth: the field, scaled, smoothed by params->smooth_px; one value a sample. */
+float *tf_region_smooth (const TfRegionSamples *samples);
+
+/* tf-measure-outline.c */
+void tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
+                           const TfOutline *outline, TfSpread *spread);
+void tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
+                             TfSpread *spread);
+
+/* tf-measure-pieces.c */
+typedef struct
+{
+  guint n;         /* with at least piece_share of the flux */
+  int witness;     /* the western of the strongest piece of each polarity */
+} TfPieces;
+void tf_region_pieces (const TfRegionSamples *samples, double flux_unsigned, TfPieces *pieces);
+/** tf_axis_witness: the polarity whose pole is west; 0 when nearer than @least deg, ABSENT without two poles. */
+int tf_axis_witness (const TfAxis *axis, double least);
+
+/* tf-measure-cautions.c */
+void tf_region_cautions (TfMeasure *measure, const TfRegionSamples *samples, const TfAxis *axis);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRegionSamples, tf_region_samples_free)
+
+G_END_DECLS
