@@ -140,6 +140,18 @@ tf_divides_with (const TfDivides *divides, int cycle, int hemisphere, const TfTi
 }
 
 TfDivides *
+tf_divides_with_params (const TfDivides *divides, const TfDivideParams *params)
+{
+  TfDivides *result = tf_divides_new (params);
+  for (guint k = 0; k < divides->moved->len; k++)
+    {
+      const Moved *moved = &g_array_index (divides->moved, Moved, k);
+      add_moved (result, moved->cycle, moved->hemisphere, moved->times, moved->lats, moved->n);
+    }
+  return result;
+}
+
+TfDivides *
 tf_divides_ref (TfDivides *divides)
 {
   return g_atomic_rc_box_acquire (divides);

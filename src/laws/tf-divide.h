@@ -44,6 +44,8 @@ TfDivides *tf_divides_new (const TfDivideParams *params);
  * computed one. */
 TfDivides *tf_divides_with (const TfDivides *divides, int cycle, int hemisphere,
                             const TfTime *times, const double *lats, guint n);
+/** tf_divides_with_params: a copy under other options; moved divides stay as they were drawn. */
+TfDivides *tf_divides_with_params (const TfDivides *divides, const TfDivideParams *params);
 TfDivides *tf_divides_ref (TfDivides *divides);
 void tf_divides_unref (TfDivides *divides);
 const TfDivideParams *tf_divides_get_params (const TfDivides *divides);

@@ -1,7 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-#include "tf-joy-line.h"
+#include "tf-joy-line-private.h"
 
 #include <math.h>
 #include <string.h>
@@ -10,20 +10,9 @@
 
 enum
 {
-  BINS = 18, /* of 5 deg, |lat| 0 to 90 */
   MIN_IN_BIN = 5
 };
 #define BIN_DEG 5.0
-
-struct _TfJoyPoints
-{
-  guint n;
-  double *x, *y, *flux, *count;
-  int *bin;
-  guint *by_ratio, n_ratio; /* points with x > 0, by y / x */
-  guint *by_y;              /* all points, by y */
-  double bin_scatter[BINS]; /* of y; over the whole sample */
-};
 
 static int
 compare_by (gconstpointer a, gconstpointer b, gpointer data)
@@ -33,22 +22,32 @@ compare_by (gconstpointer a, gconstpointer b, gpointer data)
   return (left > right) - (left < right);
 }
 
+static int
+compare_places (gconstpointer a, gconstpointer b, gpointer data)
+{
+  const TfJoyPoints *points = data;
+  int by_x = compare_by (a, b, points->x);
+  return by_x != 0 ? by_x : compare_by (a, b, points->y);
+}
+
 static void
 order_points (TfJoyPoints *points)
 {
   g_autofree double *ratio = g_new (double, points->n);
   points->by_ratio = g_new (guint, points->n);
+  points->by_x = g_new (guint, points->n);
   points->by_y = g_new (guint, points->n);
   for (guint k = 0; k < points->n; k++)
     {
       ratio[k] = points->y[k] / points->x[k];
-      points->by_y[k] = k;
+      points->by_x[k] = points->by_y[k] = k;
       if (points->x[k] > 0.0)
         points->by_ratio[points->n_ratio++] = k;
     }
   if (points->n == 0)
     return;
   g_qsort_with_data (points->by_ratio, (int)points->n_ratio, sizeof (guint), compare_by, ratio);
+  g_qsort_with_data (points->by_x, (int)points->n, sizeof (guint), compare_places, points);
   g_qsort_with_data (points->by_y, (int)points->n, sizeof (guint), compare_by, points->y);
 }
 
@@ -71,13 +70,13 @@ static void
 measure_scatter (TfJoyPoints *points)
 {
   double greatest = 0.0;
-  for (int b = 0; b < BINS; b++)
+  for (int b = 0; b < TF_JOY_BINS; b++)
     {
       points->bin_scatter[b] = scatter_of_bin (points, b);
       greatest = fmax (greatest, points->bin_scatter[b]);
     }
   double least = greatest > 0.0 ? 0.01 * greatest : 1.0;
-  for (int b = 0; b < BINS; b++)
+  for (int b = 0; b < TF_JOY_BINS; b++)
     points->bin_scatter[b] = fmax (points->bin_scatter[b], least);
 }
 
@@ -94,7 +93,7 @@ tf_joy_points_new (guint n, const double *x, const double *y, const double *flux
   for (guint k = 0; k < n; k++)
     {
       points->count[k] = 1.0;
-      points->bin[k] = CLAMP ((int)floor (lat[k] / BIN_DEG), 0, BINS - 1);
+      points->bin[k] = CLAMP ((int)floor (lat[k] / BIN_DEG), 0, TF_JOY_BINS - 1);
     }
   order_points (points);
   measure_scatter (points);
@@ -110,6 +109,7 @@ tf_joy_points_free (TfJoyPoints *points)
   g_free (points->count);
   g_free (points->bin);
   g_free (points->by_ratio);
+  g_free (points->by_x);
   g_free (points->by_y);
   g_free (points);
 }
@@ -117,6 +117,7 @@ tf_joy_points_free (TfJoyPoints *points)
 void
 tf_joy_points_count (TfJoyPoints *points, const guint *rows, guint n)
 {
+  points->drawn = TRUE;
   memset (points->count, 0, points->n * sizeof *points->count);
   for (guint k = 0; k < n; k++)
     points->count[rows[k]] += 1.0;
@@ -168,39 +169,31 @@ least_squares (const TfJoyPoints *points, gboolean by_flux, gboolean free_line)
 }
 
 TfJoyLine
-tf_joy_line_least_squares (const TfJoyPoints *points)
+tf_joy_line_least_squares (TfJoyPoints *points)
 {
   return least_squares (points, FALSE, FALSE);
 }
 
 TfJoyLine
-tf_joy_line_flux_weighted (const TfJoyPoints *points)
+tf_joy_line_flux_weighted (TfJoyPoints *points)
 {
   return least_squares (points, TRUE, FALSE);
 }
 
 TfJoyLine
-tf_joy_line_free_least_squares (const TfJoyPoints *points)
+tf_joy_line_free_least_squares (TfJoyPoints *points)
 {
   return least_squares (points, FALSE, TRUE);
 }
 
 TfJoyLine
-tf_joy_line_free_flux_weighted (const TfJoyPoints *points)
+tf_joy_line_free_flux_weighted (TfJoyPoints *points)
 {
   return least_squares (points, TRUE, TRUE);
 }
 
-/* A weighted median as values come in order: the first at which half of the weight is passed,
- * midway to the next when it is met within rounding. */
-typedef struct
-{
-  double half, sum, value;
-  gboolean met, done;
-} RunningMedian;
-
-static void
-running_add (RunningMedian *median, double value, double weight)
+void
+tf_joy_running_add (TfJoyRunning *median, double value, double weight)
 {
   if (median->done || !(weight > 0.0))
     return;
@@ -217,16 +210,16 @@ running_add (RunningMedian *median, double value, double weight)
 }
 
 TfJoyLine
-tf_joy_line_robust (const TfJoyPoints *points)
+tf_joy_line_robust (TfJoyPoints *points)
 {
   double total = 0.0;
   for (guint k = 0; k < points->n; k++)
     total += points->count[k] * points->x[k];
-  RunningMedian median = { .half = 0.5 * total, .value = NAN };
+  TfJoyRunning median = { .half = 0.5 * total, .value = NAN };
   for (guint j = 0; j < points->n_ratio && !median.done; j++)
     {
       guint k = points->by_ratio[j];
-      running_add (&median, points->y[k] / points->x[k], points->count[k] * points->x[k]);
+      tf_joy_running_add (&median, points->y[k] / points->x[k], points->count[k] * points->x[k]);
     }
   return (TfJoyLine){ median.value, NAN };
 }
@@ -234,22 +227,22 @@ tf_joy_line_robust (const TfJoyPoints *points)
 static TfJoyLine
 bin_medians (const TfJoyPoints *points, gboolean free_line)
 {
-  double total[BINS] = { 0 }, sum_x[BINS] = { 0 };
+  double total[TF_JOY_BINS] = { 0 }, sum_x[TF_JOY_BINS] = { 0 };
   for (guint k = 0; k < points->n; k++)
     {
       total[points->bin[k]] += points->count[k];
       sum_x[points->bin[k]] += points->count[k] * points->x[k];
     }
-  RunningMedian medians[BINS];
-  for (int b = 0; b < BINS; b++)
-    medians[b] = (RunningMedian){ .half = 0.5 * total[b], .value = NAN };
+  TfJoyRunning medians[TF_JOY_BINS];
+  for (int b = 0; b < TF_JOY_BINS; b++)
+    medians[b] = (TfJoyRunning){ .half = 0.5 * total[b], .value = NAN };
   for (guint j = 0; j < points->n; j++)
     {
       guint k = points->by_y[j];
-      running_add (&medians[points->bin[k]], points->y[k], points->count[k]);
+      tf_joy_running_add (&medians[points->bin[k]], points->y[k], points->count[k]);
     }
   Sums sums = { 0 };
-  for (int b = 0; b < BINS; b++)
+  for (int b = 0; b < TF_JOY_BINS; b++)
     if (total[b] >= MIN_IN_BIN)
       sums_add (&sums, total[b] / (points->bin_scatter[b] * points->bin_scatter[b]),
                 sum_x[b] / total[b], medians[b].value);
@@ -257,13 +250,13 @@ bin_medians (const TfJoyPoints *points, gboolean free_line)
 }
 
 TfJoyLine
-tf_joy_line_bin_medians (const TfJoyPoints *points)
+tf_joy_line_bin_medians (TfJoyPoints *points)
 {
   return bin_medians (points, FALSE);
 }
 
 TfJoyLine
-tf_joy_line_free_bin_medians (const TfJoyPoints *points)
+tf_joy_line_free_bin_medians (TfJoyPoints *points)
 {
   return bin_medians (points, TRUE);
 }

@@ -22,7 +22,7 @@ typedef struct
 } TfJoyLine;
 
 typedef struct _TfJoyPoints TfJoyPoints;
-typedef TfJoyLine (*TfJoyLineFunc) (const TfJoyPoints *points);
+typedef TfJoyLine (*TfJoyLineFunc) (TfJoyPoints *points);
 
 /**
  * tf_joy_points_new: copies its columns.
@@ -36,19 +36,25 @@ void tf_joy_points_free (TfJoyPoints *points);
 void tf_joy_points_count (TfJoyPoints *points, const guint *rows, guint n);
 
 /* Unweighted, and weighted by flux; through the origin, and free. */
-TfJoyLine tf_joy_line_least_squares (const TfJoyPoints *points);
-TfJoyLine tf_joy_line_flux_weighted (const TfJoyPoints *points);
-TfJoyLine tf_joy_line_free_least_squares (const TfJoyPoints *points);
-TfJoyLine tf_joy_line_free_flux_weighted (const TfJoyPoints *points);
+TfJoyLine tf_joy_line_least_squares (TfJoyPoints *points);
+TfJoyLine tf_joy_line_flux_weighted (TfJoyPoints *points);
+TfJoyLine tf_joy_line_free_least_squares (TfJoyPoints *points);
+TfJoyLine tf_joy_line_free_flux_weighted (TfJoyPoints *points);
+/**
+ * tf_joy_line_free_robust: Theil 1950, Sen 1968: the median of the slopes of all pairs of different
+ * x, and median y - slope * median x (Conover). Of the whole sample exactly; of a draw to a
+ * thousandth of the spread of draws. Cost n log n.
+ */
+TfJoyLine tf_joy_line_free_robust (TfJoyPoints *points);
 /** tf_joy_line_robust: median of y / x weighted by x: the slope that makes the sum of |y - slope x|
  * least. */
-TfJoyLine tf_joy_line_robust (const TfJoyPoints *points);
+TfJoyLine tf_joy_line_robust (TfJoyPoints *points);
 /**
  * tf_joy_line_bin_medians: least squares through the medians of the 5 deg bins that hold 5 points
  * or more, each at its mean x, weighted by n / scatter^2, scatter = 1.4826 MAD of y in the bin over
  * the whole sample (never below a hundredth of the greatest bin's).
  */
-TfJoyLine tf_joy_line_bin_medians (const TfJoyPoints *points);
-TfJoyLine tf_joy_line_free_bin_medians (const TfJoyPoints *points);
+TfJoyLine tf_joy_line_bin_medians (TfJoyPoints *points);
+TfJoyLine tf_joy_line_free_bin_medians (TfJoyPoints *points);
 
 G_END_DECLS

@@ -75,13 +75,12 @@ static const Form forms[] = {
   [TF_JOY_SINE_OF_TILT] = { "1", sine, sine, arc_sine },
 };
 
-/* What is offered. A NULL is a fit that this version does not make: the free line has no robust
- * estimator yet. */
+/* What is offered. A NULL would be a fit that this version does not make. */
 static const TfJoyLineFunc fits[4][4] = {
   [TF_JOY_LINEAR] = { tf_joy_line_least_squares, tf_joy_line_flux_weighted, tf_joy_line_robust,
                       tf_joy_line_bin_medians },
-  [TF_JOY_LINEAR_FREE] = { tf_joy_line_free_least_squares, tf_joy_line_free_flux_weighted, NULL,
-                           tf_joy_line_free_bin_medians },
+  [TF_JOY_LINEAR_FREE] = { tf_joy_line_free_least_squares, tf_joy_line_free_flux_weighted,
+                           tf_joy_line_free_robust, tf_joy_line_free_bin_medians },
   [TF_JOY_SINE] = { tf_joy_line_least_squares, tf_joy_line_flux_weighted, tf_joy_line_robust,
                     tf_joy_line_bin_medians },
   [TF_JOY_SINE_OF_TILT] = { tf_joy_line_least_squares, tf_joy_line_flux_weighted,
@@ -204,21 +203,47 @@ describe_tilts (const Columns *c, TfJoyFit *fit)
   fit->axial_resultant = c->n == 0 ? NAN : hypot (sines, cosines) / c->n;
 }
 
-/* A bootstrap draw: the statistic of the points with the multiplicity that was drawn. */
+/* Bootstrap draws: the line through the points with the multiplicity that was drawn. */
 typedef struct
 {
   TfJoyPoints *points;
   TfJoyLineFunc func;
-  gboolean intercept;
-} Draw;
+  double *intercepts; /* of the draws in order */
+  guint at;
+} Draws;
 
 static double
-draw_statistic (const guint *rows, guint n, gpointer data)
+draw_slope (const guint *rows, guint n, gpointer data)
 {
-  Draw *draw = data;
-  tf_joy_points_count (draw->points, rows, n);
-  TfJoyLine line = draw->func (draw->points);
-  return draw->intercept ? line.intercept : line.slope;
+  Draws *draws = data;
+  tf_joy_points_count (draws->points, rows, n);
+  TfJoyLine line = draws->func (draws->points);
+  draws->intercepts[draws->at++] = line.intercept;
+  return line.slope;
+}
+
+/* The same draws come again, by the same seed: their lines are known. */
+static double
+recall_intercept (const guint *rows, guint n, gpointer data)
+{
+  Draws *draws = data;
+  return draws->intercepts[draws->at++];
+}
+
+static void
+fit_intervals (const Columns *c, const TfJoyParams *params, TfJoyPoints *points, TfJoyFit *fit)
+{
+  guint n = (guint)MAX (params->draws, 0);
+  g_autofree double *intercepts = g_new (double, n + 1);
+  Draws draws = { points, fits[params->form][params->estimator], intercepts, 0 };
+  if (isnan (fit->slope))
+    return;
+  fit->slope_ci = tf_bootstrap_clusters (c->region, c->n, n, (guint64)params->seed, params->level,
+                                         draw_slope, &draws);
+  draws.at = 0;
+  if (!isnan (fit->intercept))
+    fit->intercept_ci = tf_bootstrap_clusters (c->region, c->n, n, (guint64)params->seed,
+                                               params->level, recall_intercept, &draws);
 }
 
 static void
@@ -232,23 +257,14 @@ fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit)
       y[k] = form->y (c->tilt[k]);
     }
   TfJoyPoints *points = tf_joy_points_new (c->n, x, y, c->flux, c->lat);
-  TfJoyLineFunc func = fits[params->form][params->estimator];
-  TfJoyLine line = func (points);
+  TfJoyLine line = fits[params->form][params->estimator](points);
   fit->slope = line.slope;
   fit->intercept = line.intercept;
   for (guint k = 0; k < c->n; k++)
     y[k] = c->tilt[k]
            - form->tilt (line.slope * x[k] + (isnan (line.intercept) ? 0.0 : line.intercept));
   fit->scatter_deg = robust_scatter (y, c->n);
-  guint draws = (guint)MAX (params->draws, 0);
-  Draw draw = { points, func, FALSE };
-  if (!isnan (line.slope))
-    fit->slope_ci = tf_bootstrap_clusters (c->region, c->n, draws, (guint64)params->seed,
-                                           params->level, draw_statistic, &draw);
-  draw.intercept = TRUE;
-  if (!isnan (line.intercept))
-    fit->intercept_ci = tf_bootstrap_clusters (c->region, c->n, draws, (guint64)params->seed,
-                                               params->level, draw_statistic, &draw);
+  fit_intervals (c, params, points, fit);
   tf_joy_points_free (points);
 }
 

@@ -48,8 +48,8 @@ typedef struct
 {
   int cycle, hemisphere; /* 0: all / both */
   guint n, regions, no_polarity;
-  double slope;     /* in tf_joy_unit() */
-  double intercept; /* deg; NaN where the form has none */
+  double slope;                      /* in tf_joy_unit() */
+  double intercept;                  /* deg; NaN where the form has none */
   TfInterval slope_ci, intercept_ci; /* bootstrap clustered by region */
   double scatter_deg;                /* 1.4826 MAD of the residuals */
   double mean_tilt_deg, median_tilt_deg;
@@ -61,8 +61,7 @@ typedef struct
  * NaN when fewer than 3 rows, or when the form has no such estimator (tf_joy_offers()). */
 TfJoyFit tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
                      const TfJoyParams *params);
-/** tf_joy_offers: whether that form can be fitted in that way; linear-free has no robust estimator
- * yet. */
+/** tf_joy_offers: whether that form can be fitted in that way (all can). */
 gboolean tf_joy_offers (TfJoyForm form, TfJoyEstimator estimator);
 /** tf_joy_uses: whether a row enters the Joy sample of @params: it has a latitude and a tilt that
  * is not too steep, does not break Hale's law, and is neither too compact nor too narrow where that

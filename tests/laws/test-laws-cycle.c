@@ -251,6 +251,11 @@ test_moved_divide (void)
                  tf_divides_latitude (computed, 24, -1, test_laws_month (24, 0.0)), 0.0);
   check_call (moved, test_laws_month (24, 10.0), 14.5, 24, 0, "cycle-by-divide");
   check_call (moved, test_laws_month (24, 10.0), -14.5, 23, 24, "cycle-near-divide");
+  TfDivideParams params = test_laws_divide_params ();
+  params.band_deg = 0.0;
+  g_autoptr (TfDivides) bare = tf_divides_with_params (moved, &params);
+  check_call (bare, test_laws_month (24, 10.0), 10.01, 24, 0, "cycle-by-divide");
+  check_call (bare, test_laws_month (24, 10.0), -14.7, 23, 0, "cycle-by-divide");
   g_autoptr (TfDivides) back = tf_divides_with (moved, 24, 1, NULL, NULL, 0);
   g_assert_false (tf_divides_is_moved (back, 24, 1));
   g_autoptr (TfDivides) both = tf_divides_with (moved, 24, -1, times, lats, 1);

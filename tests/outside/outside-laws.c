@@ -160,8 +160,8 @@ print_fits (void)
           params.form = form;
           params.estimator = estimator;
           params.separation_min_deg = separations[s];
-          params.draws = 200;
-          if (estimator == TF_JOY_FLUX_WEIGHTED || !tf_joy_offers (form, estimator))
+          params.draws = form == TF_JOY_LINEAR_FREE && estimator == TF_JOY_ROBUST ? 0 : 200;
+          if (estimator == TF_JOY_FLUX_WEIGHTED)
             continue;
           TfJoyFit fit = tf_joy_fit (sample, verdicts, 0, 0, &params);
           printf ("%s,%s,%g,%u,%u,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n",
