@@ -100,14 +100,15 @@ tf_dialect_missing_ctype (TfHeader *header, TfNotes *repairs)
   return TRUE;
 }
 
-/* CTYPE GONGX: centre in CRPIX, radius in FNDLMBMI and FNDLMBMA, pixels; no scale. */
+/* CTYPE GONGX, or any without CDELT: centre in CRPIX, radius in FNDLMBMI and FNDLMBMA, pixels; no scale. */
 gboolean
 tf_dialect_ground_network (TfHeader *header, TfNotes *repairs)
 {
   double minor = tf_header_number (header, "FNDLMBMI"), major = tf_header_number (header, "FNDLMBMA");
   double x = tf_header_number (header, "CRPIX1"), y = tf_header_number (header, "CRPIX2");
   double radius = isnan (major) ? minor : isnan (minor) ? major : 0.5 * (minor + major);
-  if (!type_begins (header, "GONG") || !(radius > 1) || isnan (x + y) || !set_centre_and_radius (header, x, y, radius))
+  gboolean network = type_begins (header, "GONG") || !tf_header_has (header, "CDELT1");
+  if (!network || !(radius > 1) || isnan (x + y) || !set_centre_and_radius (header, x, y, radius))
     return FALSE;
   tf_notes_add (repairs, "ground-network", "dddd", x, y, radius, tf_header_number (header, "CDELT1"));
   return TRUE;
