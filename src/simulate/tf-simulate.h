@@ -13,6 +13,7 @@
 #include "tf-frame.h"
 #include "tf-frame-write.h"
 #include "tf-geometry.h"
+#include "tf-option.h"
 
 G_BEGIN_DECLS
 
@@ -20,8 +21,9 @@ G_BEGIN_DECLS
 GQuark tf_simulate_error_quark (void);
 typedef enum
 {
-  TF_SIMULATE_ERROR_OPTION,
-  TF_SIMULATE_ERROR_WRITE,
+  TF_SIMULATE_ERROR_OPTION,    /* what was asked cannot be drawn, or not in that style of header */
+  TF_SIMULATE_ERROR_WRITE,     /* a truth file cannot be written (a frame: TF_FRAME_ERROR_WRITE) */
+  TF_SIMULATE_ERROR_CANCELLED,
 } TfSimulateError;
 
 /** TfBipole: Gaussian poles on the sphere, exact flux balance unless imbalance says otherwise; the whole turns with the rotation law. */
@@ -33,7 +35,8 @@ typedef struct
   double flux_mx;                     /* of each polarity */
   double lead_radius_deg, follow_radius_deg; /* Gaussian sigma */
   double imbalance;                   /* share taken from the following pole */
-  guint fragments;                    /* following (and, a third of it, leading) pole broken into pieces; 0 smooth */
+  guint fragments;                    /* following pole broken into so many pieces, the leading one into a third of
+                                         them; 0 smooth. Flux and centroid of the pole stay exactly as they are */
   double born_s, grow_s, decay_s;     /* relative to epoch: flux grows linearly over grow_s from born_s, then decays with e-time decay_s; 0 grow: constant */
 } TfBipole;
 
@@ -54,14 +57,17 @@ void tf_sun_add_blob (TfSun *sun, const char *name, const char *what, const TfBl
 void tf_sun_add_network (TfSun *sun, guint n, double flux_mx);
 /** tf_sun_field: radial field, G, at a unit vector (Carrington frame) at @time: the truth itself. */
 double tf_sun_field (const TfSun *sun, TfTime time, const double unit[3]);
+/** tf_sun_flux: flux of the source @name at @time, Mx: positive and negative as drawn, each pole whole, before opposite
+ * polarities that overlap cancel. FALSE when there is no such source. */
+gboolean tf_sun_flux (const TfSun *sun, const char *name, TfTime time, double *positive_mx, double *negative_mx);
 
 /** TfHeaderStyle: the dialect a frame is written in (own spellings of real habits). */
 typedef enum
 {
   TF_STYLE_STANDARD,      /* WCS, arcsec, HGLN/HGLT/DSUN */
-  TF_STYLE_TURNED,        /* CROTA2 near 180 */
-  TF_STYLE_OLD_PIXELS,    /* X0, Y0, R0 in pixels, B0 in radians, mm-dd-yy */
-  TF_STYLE_GROUND,        /* centre and semidiameter in pixels, radians, YYYY/MM/DD with GPS time */
+  TF_STYLE_TURNED,        /* CROTA2: 179.93 deg are added to the turn that the shot asks for */
+  TF_STYLE_OLD_PIXELS,    /* X0, Y0, R0 in pixels, B0 in radians, mm-dd-yy; north up, from the Earth only */
+  TF_STYLE_GROUND,        /* centre and semidiameter in pixels, radians, YYYY/MM/DD with GPS time; likewise */
   TF_STYLE_TAI,           /* TAI strings, no CUNIT */
 } TfHeaderStyle;
 
@@ -75,13 +81,17 @@ typedef struct
   double psf_arcsec;       /* Gaussian FWHM; 0 none */
   double quantum_gauss;    /* 0: floats */
   TfHeaderStyle style;
-  TfObserver observer;     /* source UNKNOWN: the Earth */
+  TfObserver observer;     /* source UNKNOWN: the Earth; carrington_lon_deg NaN: from the Stonyhurst longitude and the
+                              Earth's L0 */
   const char *instrument;  /* TELESCOP */
+  const char *desk;        /* OBSERVER: who was on duty; NULL: no such card */
+  gboolean intensity;      /* a continuum picture with the spots of the field, counts: a companion, no field */
   guint supersample;       /* points a pixel side; 0: 2 */
 } TfShot;
 void tf_shot_init (TfShot *shot);
 
-/** tf_sun_shoot: the pixels of a frame, G (NaN off the disk), with the geometry they were made with. */
+/** tf_sun_shoot: the pixels of a frame, G (NaN off the disk), with the geometry they were made with. B_los = B_r mu, meant over
+ * the points of a pixel, blurred, with noise, in steps of the quantum. Not for intensity pictures. */
 TfFrame *tf_sun_shoot (const TfSun *sun, TfTime time, const TfShot *shot, guint64 seed, const TfWork *work, GError **error);
 /** tf_sun_shoot_map: Carrington map of @width columns of rotation @rotation, each column at its own time. */
 TfFrame *tf_sun_shoot_map (const TfSun *sun, int rotation, guint width, guint height, const TfShot *shot, guint64 seed,
