@@ -12,7 +12,8 @@
  * numbers, hold no branches that keep them from being vectorised, and are compiled twice on x86-64.
  */
 
-#if defined(__x86_64__) && defined(__GNUC__) && !defined(__clang__) && !defined(__SANITIZE_ADDRESS__)
+#if defined(__x86_64__) && defined(__GNUC__) && !defined(__clang__)                                \
+    && !defined(__SANITIZE_ADDRESS__)
 #define TF_HOT __attribute__ ((target_clones ("arch=x86-64-v3", "default")))
 #else
 #define TF_HOT
@@ -34,7 +35,8 @@ sight_of (const TfGeometry *g, double y, double x0)
 {
   Sight s;
   double dx = x0 - g->crpix[0], dy = y - g->crpix[1];
-  double xi = (g->cd[0][0] * dx + g->cd[0][1] * dy) * TF_DEG, eta = (g->cd[1][0] * dx + g->cd[1][1] * dy) * TF_DEG;
+  double xi = (g->cd[0][0] * dx + g->cd[0][1] * dy) * TF_DEG,
+         eta = (g->cd[1][0] * dx + g->cd[1][1] * dy) * TF_DEG;
   double dxi = g->cd[0][0] * TF_DEG, deta = g->cd[1][0] * TF_DEG;
   for (int k = 0; k < 3; k++)
     {
@@ -93,7 +95,8 @@ typedef struct
 static void
 carrington_matrix (const TfGeometry *g, double m[3][3])
 {
-  double lon = g->observer.carrington_lon_deg * TF_DEG, sl = sin (lon), cl = cos (lon), sb = g->sin_b0, cb = g->cos_b0;
+  double lon = g->observer.carrington_lon_deg * TF_DEG, sl = sin (lon), cl = cos (lon),
+         sb = g->sin_b0, cb = g->cos_b0;
   const double rows[3][3] = {
     { -cb * cl, -sl, -sb * cl }, /* columns: away from the observer, west, north */
     { -cb * sl, cl, -sb * sl },
@@ -107,7 +110,8 @@ carrington_matrix (const TfGeometry *g, double m[3][3])
 static DiskRow
 disk_row (const TfGeometry *g, double y, double x0)
 {
-  DiskRow row = { .sight = sight_of (g, y, x0), .distance = g->distance_mm, .radius = g->radius_mm };
+  DiskRow row
+      = { .sight = sight_of (g, y, x0), .distance = g->distance_mm, .radius = g->radius_mm };
   double m[3][3];
   carrington_matrix (g, m);
   row.solid = fabs (g->cd[0][0] * g->cd[1][1] - g->cd[0][1] * g->cd[1][0]) * TF_DEG * TF_DEG;
@@ -138,7 +142,8 @@ disk_kernel (const DiskRow *row, guint first, guint n, Planes *p)
   for (int k = 0; k < (int)n; k++)
     {
       double i = (double)(int)first + (double)k;
-      double w0 = s->start[0] + i * s->step[0], w1 = s->start[1] + i * s->step[1], w2 = s->start[2] + i * s->step[2];
+      double w0 = s->start[0] + i * s->step[0], w1 = s->start[1] + i * s->step[1],
+             w2 = s->start[2] + i * s->step[2];
       double side2 = w1 * w1 + w2 * w2, length2 = w0 * w0 + side2;
       double inside = r2 * length2 - d2 * side2;
       double root = w0 > 0.0 ? sqrt (inside) : NAN;
@@ -159,7 +164,8 @@ map_kernel (const TfGeometry *g, double y, double x0, guint n, Planes *p)
   TfPlace place;
   double area = tf_geometry_area (g, CLAMP (x0, 0.5, g->width + 0.5), y);
   gboolean there = tf_geometry_pixel_to_sun (g, 0.5, y, &place);
-  double lon = (g->crval_deg[0] + g->cd[0][0] * (x0 - g->crpix[0])) * TF_DEG, step = g->cd[0][0] * TF_DEG;
+  double lon = (g->crval_deg[0] + g->cd[0][0] * (x0 - g->crpix[0])) * TF_DEG,
+         step = g->cd[0][0] * TF_DEG;
   double c = cos (lon), s = sin (lon), dc = cos (step), ds = sin (step);
   double lat = there ? place.lat_deg * TF_DEG : NAN, cl = cos (lat), sl = sin (lat);
   for (guint k = 0; k < n; k++)
@@ -192,7 +198,8 @@ give (const Planes *p, guint n, double (*unit)[3], double *mu, double *area)
 }
 
 void
-tf_geometry_row_sun (const TfGeometry *g, double y, double x0, guint n, double (*unit)[3], double *mu, double *area)
+tf_geometry_row_sun (const TfGeometry *g, double y, double x0, guint n, double (*unit)[3],
+                     double *mu, double *area)
 {
   Planes planes;
   gboolean map = tf_geometry_is_map (g);

@@ -69,7 +69,8 @@ static gboolean
 make_tan (TfGeometry *g)
 {
   const TfObserver *o = &g->observer;
-  double all = o->distance_m + o->b0_deg + o->stonyhurst_lon_deg + o->carrington_lon_deg + g->lonpole_deg;
+  double all
+      = o->distance_m + o->b0_deg + o->stonyhurst_lon_deg + o->carrington_lon_deg + g->lonpole_deg;
   g->distance_mm = o->distance_m * 1e-6;
   if (!isfinite (all) || !(g->distance_mm > g->radius_mm) || fabs (o->b0_deg) > 90.0
       || fabs (g->crval_deg[1]) > 90.0)
@@ -109,10 +110,12 @@ tf_geometry_make (TfGeometry *geometry)
 }
 
 gboolean
-tf_geometry_make_disk (TfGeometry *geometry, guint width, guint height, double centre_x, double centre_y,
-                       double scale_arcsec, double north_angle_deg, const TfObserver *observer, double radius_mm)
+tf_geometry_make_disk (TfGeometry *geometry, guint width, guint height, double centre_x,
+                       double centre_y, double scale_arcsec, double north_angle_deg,
+                       const TfObserver *observer, double radius_mm)
 {
-  double s = scale_arcsec / 3600.0, c = cos (north_angle_deg * TF_DEG), n = sin (north_angle_deg * TF_DEG);
+  double s = scale_arcsec / 3600.0, c = cos (north_angle_deg * TF_DEG),
+         n = sin (north_angle_deg * TF_DEG);
   *geometry = (TfGeometry){
     .projection = TF_PROJECTION_TAN,
     .width = width,
@@ -132,7 +135,8 @@ static void
 pixel_to_vector (const TfGeometry *g, double x, double y, double w[3])
 {
   double dx = x - g->crpix[0], dy = y - g->crpix[1];
-  double xi = (g->cd[0][0] * dx + g->cd[0][1] * dy) * TF_DEG, eta = (g->cd[1][0] * dx + g->cd[1][1] * dy) * TF_DEG;
+  double xi = (g->cd[0][0] * dx + g->cd[0][1] * dy) * TF_DEG,
+         eta = (g->cd[1][0] * dx + g->cd[1][1] * dy) * TF_DEG;
   for (int k = 0; k < 3; k++)
     w[k] = -g->rotation[k][0] * eta + g->rotation[k][1] * xi + g->rotation[k][2];
 }
@@ -154,7 +158,8 @@ vector_to_pixel (const TfGeometry *g, const double w[3], double *x, double *y)
 }
 
 void
-tf_geometry_pixel_to_projective (const TfGeometry *g, double x, double y, double *tx_arcsec, double *ty_arcsec)
+tf_geometry_pixel_to_projective (const TfGeometry *g, double x, double y, double *tx_arcsec,
+                                 double *ty_arcsec)
 {
   *tx_arcsec = *ty_arcsec = NAN;
   if (g->projection != TF_PROJECTION_TAN)
@@ -166,7 +171,8 @@ tf_geometry_pixel_to_projective (const TfGeometry *g, double x, double y, double
 }
 
 gboolean
-tf_geometry_projective_to_pixel (const TfGeometry *g, double tx_arcsec, double ty_arcsec, double *x, double *y)
+tf_geometry_projective_to_pixel (const TfGeometry *g, double tx_arcsec, double ty_arcsec, double *x,
+                                 double *y)
 {
   double w[3];
   *x = *y = NAN;
@@ -190,7 +196,8 @@ map_to_sun (const TfGeometry *g, double x, double y, TfPlace *place)
     }
   else
     lat = g->crval_deg[1] + step;
-  if (!isfinite (lon) || !(fabs (lat) <= 90.0) || x < 0.5 || x > g->width + 0.5 || y < 0.5 || y > g->height + 0.5)
+  if (!isfinite (lon) || !(fabs (lat) <= 90.0) || x < 0.5 || x > g->width + 0.5 || y < 0.5
+      || y > g->height + 0.5)
     return FALSE;
   place->carrington_lon_deg = tf_wrap_360 (lon);
   place->lat_deg = lat;
@@ -212,8 +219,9 @@ map_column (const TfGeometry *g, double x)
 static gboolean
 map_from_sun (const TfGeometry *g, double carrington_lon_deg, double lat_deg, double *x, double *y)
 {
-  double along = g->projection == TF_PROJECTION_CEA ? sin (lat_deg * TF_DEG) - sin (g->crval_deg[1] * TF_DEG)
-                                                     : lat_deg - g->crval_deg[1];
+  double along = g->projection == TF_PROJECTION_CEA
+                     ? sin (lat_deg * TF_DEG) - sin (g->crval_deg[1] * TF_DEG)
+                     : lat_deg - g->crval_deg[1];
   if (!isfinite (carrington_lon_deg) || !(fabs (lat_deg) <= 90.0))
     return FALSE;
   *x = map_column (g, g->crpix[0] + g->inverse[0][0] * (carrington_lon_deg - g->crval_deg[0]));
@@ -279,8 +287,8 @@ tf_geometry_pixel_to_sun (const TfGeometry *g, double x, double y, TfPlace *plac
 }
 
 gboolean
-tf_geometry_sun_to_pixel (const TfGeometry *g, double carrington_lon_deg, double lat_deg, double *x, double *y,
-                          double *mu)
+tf_geometry_sun_to_pixel (const TfGeometry *g, double carrington_lon_deg, double lat_deg, double *x,
+                          double *y, double *mu)
 {
   double n[3], d = g->distance_mm, r = g->radius_mm;
   *x = *y = NAN;
@@ -349,13 +357,15 @@ tf_geometry_stonyhurst_of (const TfGeometry *g, double carrington_lon_deg)
 {
   if (g->projection != TF_PROJECTION_TAN)
     return NAN;
-  return tf_wrap_180 (carrington_lon_deg - g->observer.carrington_lon_deg + g->observer.stonyhurst_lon_deg);
+  return tf_wrap_180 (carrington_lon_deg - g->observer.carrington_lon_deg
+                      + g->observer.stonyhurst_lon_deg);
 }
 
 double
 tf_geometry_radius_arcsec (const TfGeometry *g)
 {
-  return g->projection == TF_PROJECTION_TAN ? asin (g->radius_mm / g->distance_mm) / TF_ARCSEC : NAN;
+  return g->projection == TF_PROJECTION_TAN ? asin (g->radius_mm / g->distance_mm) / TF_ARCSEC
+                                            : NAN;
 }
 
 double
@@ -377,7 +387,8 @@ tf_geometry_north_angle (const TfGeometry *g)
   const double *centre = g->rotation[0], *north = g->rotation[2];
   double xi = north[1] * centre[2] - centre[1] * north[2];
   double eta = centre[0] * north[2] - north[0] * centre[2];
-  double dx = g->inverse[0][0] * xi + g->inverse[0][1] * eta, dy = g->inverse[1][0] * xi + g->inverse[1][1] * eta;
+  double dx = g->inverse[0][0] * xi + g->inverse[0][1] * eta,
+         dy = g->inverse[1][0] * xi + g->inverse[1][1] * eta;
   return tf_wrap_180 (atan2 (-dx, dy) / TF_DEG);
 }
 
@@ -393,7 +404,8 @@ tf_geometry_disk_radius (const TfGeometry *g)
   if (g->projection != TF_PROJECTION_TAN)
     return NAN;
   double d = g->distance_mm, r = g->radius_mm, deg = r / sqrt ((d - r) * (d + r)) / TF_DEG;
-  return 0.5 * deg * (1.0 / hypot (g->cd[0][0], g->cd[1][0]) + 1.0 / hypot (g->cd[0][1], g->cd[1][1]));
+  return 0.5 * deg
+         * (1.0 / hypot (g->cd[0][0], g->cd[1][0]) + 1.0 / hypot (g->cd[0][1], g->cd[1][1]));
 }
 
 const char *

@@ -43,7 +43,8 @@ static SunAxes
 sun_axes (void)
 {
   double a = TF_POLE_RA_DEG * TF_DEG, d = TF_POLE_DEC_DEG * TF_DEG;
-  SunAxes axes = { .pole = { cos (d) * cos (a), cos (d) * sin (a), sin (d) }, .node = { -sin (a), cos (a), 0.0 } };
+  SunAxes axes = { .pole = { cos (d) * cos (a), cos (d) * sin (a), sin (d) },
+                   .node = { -sin (a), cos (a), 0.0 } };
   eraPxp (axes.pole, axes.node, axes.quarter);
   return axes;
 }
@@ -103,7 +104,8 @@ tf_observer_carrington (TfTime time, double stonyhurst_lon_deg, double distance_
 {
   TfObserver earth = tf_observer_earth (time);
   double later = (distance_m - earth.distance_m) / TF_LIGHT_M_S;
-  return tf_wrap_360 (earth.carrington_lon_deg + stonyhurst_lon_deg + TF_W1_DEG_DAY * later / TF_DAY_S);
+  return tf_wrap_360 (earth.carrington_lon_deg + stonyhurst_lon_deg
+                      + TF_W1_DEG_DAY * later / TF_DAY_S);
 }
 
 /* The Sun's apparent direction (the geometric one moved by the Earth's velocity over that of light),
@@ -122,7 +124,8 @@ tf_earth_p (TfTime time)
   SunAxes axes = sun_axes ();
   eraPxp (npb[2], sun, east);
   eraPxp (sun, east, north);
-  return atan2 (eraPdp (axes.pole, east) * eraPm (north), eraPdp (axes.pole, north) * eraPm (east)) / TF_DEG;
+  return atan2 (eraPdp (axes.pole, east) * eraPm (north), eraPdp (axes.pole, north) * eraPm (east))
+         / TF_DEG;
 }
 
 /* -- Carrington rotations -------------------------------------------------------------------- */
@@ -160,8 +163,8 @@ meeus_sun (double t, double *longitude, double *radius)
   double l = 280.46646 + 36000.76983 * t + 0.0003032 * t * t;
   double m = (357.52911 + 35999.05029 * t - 0.0001537 * t * t) * TF_DEG;
   double e = 0.016708634 - 0.000042037 * t - 0.0000001267 * t * t;
-  double c = (1.914602 - 0.004817 * t - 0.000014 * t * t) * sin (m) + (0.019993 - 0.000101 * t) * sin (2.0 * m)
-             + 0.000289 * sin (3.0 * m);
+  double c = (1.914602 - 0.004817 * t - 0.000014 * t * t) * sin (m)
+             + (0.019993 - 0.000101 * t) * sin (2.0 * m) + 0.000289 * sin (3.0 * m);
   *longitude = l + c;
   *radius = 1.000001018 * (1.0 - e * e) / (1.0 + e * cos (m + c * TF_DEG));
 }
@@ -178,7 +181,10 @@ tf_observer_meeus (TfTime time, double *p_deg, double *b0_deg, double *l0_deg)
   double tilt = 7.25 * TF_DEG;
   double node = 73.6667 + 1.3958333 * (jd - 2396758.0) / 36525.0;
   double apparent = (longitude - 20.4898 / 3600.0 / radius) * TF_DEG;
-  double eps = (23.0 + 26.0 / 60.0 + (21.448 - 46.8150 * t - 0.00059 * t * t + 0.001813 * t * t * t) / 3600.0) * TF_DEG + deps;
+  double eps = (23.0 + 26.0 / 60.0
+                + (21.448 - 46.8150 * t - 0.00059 * t * t + 0.001813 * t * t * t) / 3600.0)
+                   * TF_DEG
+               + deps;
   double from_node = apparent - node * TF_DEG;
   double x = atan (-cos (apparent + dpsi) * tan (eps)), y = atan (-cos (from_node) * tan (tilt));
   double eta = atan2 (-sin (from_node) * cos (tilt), -cos (from_node)) / TF_DEG;

@@ -12,8 +12,10 @@
  */
 
 /* Abramowitz & Stegun, Handbook of Mathematical Functions, table 25.4, n = 8. */
-static const double nodes[4] = { 0.183434642495650, 0.525532409916329, 0.796666477413627, 0.960289856497536 };
-static const double weights[4] = { 0.362683783378362, 0.313706645877887, 0.222381034453374, 0.101228536290376 };
+static const double nodes[4]
+    = { 0.183434642495650, 0.525532409916329, 0.796666477413627, 0.960289856497536 };
+static const double weights[4]
+    = { 0.362683783378362, 0.313706645877887, 0.222381034453374, 0.101228536290376 };
 
 #define MOST_HEIGHT 0.25 /* of v: a taller slab is summed in pieces */
 
@@ -123,7 +125,9 @@ slab_area (Line *line, double low, double high)
     {
       double middle = low + (2.0 * piece + 1.0) * half;
       for (int j = 0; j < 4; j++)
-        sum += half * weights[j] * (line_area (line, middle - half * nodes[j]) + line_area (line, middle + half * nodes[j]));
+        sum += half * weights[j]
+               * (line_area (line, middle - half * nodes[j])
+                  + line_area (line, middle + half * nodes[j]));
     }
   return sum;
 }
@@ -141,6 +145,7 @@ tf_outline_area (const TfOutline *outline, double radius_mm)
   add_meetings (edges, heights);
   g_array_sort (heights, compare);
   for (guint k = 0; k + 1 < heights->len; k++)
-    sum += slab_area (&line, g_array_index (heights, double, k), g_array_index (heights, double, k + 1));
+    sum += slab_area (&line, g_array_index (heights, double, k),
+                      g_array_index (heights, double, k + 1));
   return sum * radius_mm * radius_mm;
 }

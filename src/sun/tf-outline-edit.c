@@ -62,7 +62,8 @@ deform_vertex (TfVertex vertex, const void *data)
   double x = d->west + rho * cos (angle), y = d->north + rho * sin (angle), r = hypot (x, y);
   double across = r > 0.0 ? sin (r) / r : 1.0;
   for (int k = 0; k < 3; k++)
-    out[k] = cos (r) * d->tangent.centre[k] + across * (x * d->tangent.west[k] + y * d->tangent.north[k]);
+    out[k] = cos (r) * d->tangent.centre[k]
+             + across * (x * d->tangent.west[k] + y * d->tangent.north[k]);
   return tf_vertex_of (out);
 }
 
@@ -107,7 +108,8 @@ tf_outline_carry (const TfOutline *outline, TfTime time, guint law)
   for (guint k = 0; moved != NULL && k < moved->n_pins; k++)
     {
       TfPinnedPole *pin = &moved->pins[k];
-      pin->lon_deg = tf_wrap_360 (pin->lon_deg + tf_rotation_carry (law, pin->lat_deg, carry.seconds));
+      pin->lon_deg
+          = tf_wrap_360 (pin->lon_deg + tf_rotation_carry (law, pin->lat_deg, carry.seconds));
     }
   return moved;
 }

@@ -181,7 +181,8 @@ gboolean
 tf_outline_contains (const TfOutline *outline, const double unit[3])
 {
   double u, v;
-  if (!(dot (unit, outline->cap_unit) >= outline->cap_cos) || !tf_tangent_project (&outline->tangent, unit, &u, &v))
+  if (!(dot (unit, outline->cap_unit) >= outline->cap_cos)
+      || !tf_tangent_project (&outline->tangent, unit, &u, &v))
     return FALSE;
   return inside_rings (outline, u, v) && !inside_left_out (outline, u, v);
 }
@@ -190,7 +191,8 @@ gboolean
 tf_outline_contains_rings (const TfOutline *outline, const double unit[3])
 {
   double u, v;
-  if (!(dot (unit, outline->cap_unit) >= outline->cap_cos) || !tf_tangent_project (&outline->tangent, unit, &u, &v))
+  if (!(dot (unit, outline->cap_unit) >= outline->cap_cos)
+      || !tf_tangent_project (&outline->tangent, unit, &u, &v))
     return FALSE;
   return inside_rings (outline, u, v);
 }
@@ -227,7 +229,8 @@ make_cap (TfOutline *outline)
       for (guint j = 0; j < ring->n; j++)
         {
           const TfVertex *p = &ring->vertices[j];
-          double r = tf_sphere_distance (outline->cap_lon, outline->cap_lat, p->lon_deg, p->lat_deg);
+          double r
+              = tf_sphere_distance (outline->cap_lon, outline->cap_lat, p->lon_deg, p->lat_deg);
           outline->cap_radius = MAX (outline->cap_radius, r);
         }
     }

@@ -20,7 +20,9 @@ build_rings (const char *key, GPtrArray *rings, JsonBuilder *builder)
       const TfRing *ring = g_ptr_array_index (rings, k);
       json_builder_begin_array (builder);
       for (guint j = 0; j < ring->n; j++)
-        tf_json_numbers (builder, NULL, (const double[2]){ ring->vertices[j].lon_deg, ring->vertices[j].lat_deg }, 2);
+        tf_json_numbers (builder, NULL,
+                         (const double[2]){ ring->vertices[j].lon_deg, ring->vertices[j].lat_deg },
+                         2);
       json_builder_end_array (builder);
     }
   json_builder_end_array (builder);
@@ -112,19 +114,24 @@ read_ring (TfOutline *outline, JsonNode *node, gboolean left_out, GError **error
       JsonNode *element = json_array_get_element (array, k);
       JsonArray *pair = JSON_NODE_HOLDS_ARRAY (element) ? json_node_get_array (element) : NULL;
       if (pair == NULL || json_array_get_length (pair) != 2)
-        return form_error (error, _ ("A vertex of the outline is not [lon, lat], two numbers in degrees."));
-      vertices[k] = (TfVertex){ tf_json_element_number (pair, 0), tf_json_element_number (pair, 1) };
+        return form_error (
+            error, _ ("A vertex of the outline is not [lon, lat], two numbers in degrees."));
+      vertices[k]
+          = (TfVertex){ tf_json_element_number (pair, 0), tf_json_element_number (pair, 1) };
     }
-  return tf_outline_fill (outline, vertices, n, left_out, left_out ? _ ("left-out area") : _ ("ring"), error);
+  return tf_outline_fill (outline, vertices, n, left_out,
+                          left_out ? _ ("left-out area") : _ ("ring"), error);
 }
 
 static gboolean
-read_rings (TfOutline *outline, JsonObject *object, const char *key, gboolean left_out, GError **error)
+read_rings (TfOutline *outline, JsonObject *object, const char *key, gboolean left_out,
+            GError **error)
 {
   JsonArray *rings = tf_json_member_array (object, key);
   JsonNode *node = json_object_get_member (object, key);
   if (rings == NULL && node != NULL && !JSON_NODE_HOLDS_NULL (node))
-    return form_error (error, _ ("The outline's \"left_out\" is not an array of rings of [lon, lat]."));
+    return form_error (error,
+                       _ ("The outline's \"left_out\" is not an array of rings of [lon, lat]."));
   for (guint k = 0; rings != NULL && k < json_array_get_length (rings); k++)
     if (!read_ring (outline, json_array_get_element (rings, k), left_out, error))
       return FALSE;
@@ -143,8 +150,10 @@ read_pin (TfOutline *outline, JsonNode *node, GError **error)
     .reason = tf_json_member_string (object, "reason"),
     .person = tf_json_member_string (object, "person"),
   };
-  if ((polarity != 1 && polarity != -1) || !(fabs (pin.lon_deg) < 1e6) || !(fabs (pin.lat_deg) <= 90.0))
-    return form_error (error, _ ("The outline's \"pinned\" needs polarity 1 or -1, lon and lat in degrees, or must be null."));
+  if ((polarity != 1 && polarity != -1) || !(fabs (pin.lon_deg) < 1e6)
+      || !(fabs (pin.lat_deg) <= 90.0))
+    return form_error (error, _ ("The outline's \"pinned\" needs polarity 1 or -1, lon and lat in "
+                                 "degrees, or must be null."));
   tf_outline_fill_pin (outline, &pin);
   return TRUE;
 }
@@ -173,17 +182,22 @@ read_time (JsonObject *object, TfTime *time, GError **error)
     return TRUE;
   *time = tf_time_read (tf_json_member_string (object, "time"));
   return tf_time_is_known (*time)
-         || form_error (error, _ ("The outline's \"time\" is not ISO 8601 UTC, such as 2013-10-12T06:00:00Z."));
+         || form_error (
+             error,
+             _ ("The outline's \"time\" is not ISO 8601 UTC, such as 2013-10-12T06:00:00Z."));
 }
 
 TfOutline *
 tf_outline_read_json (JsonNode *node, GError **error)
 {
   TfTime time;
-  JsonObject *object = node != NULL && JSON_NODE_HOLDS_OBJECT (node) ? json_node_get_object (node) : NULL;
+  JsonObject *object
+      = node != NULL && JSON_NODE_HOLDS_OBJECT (node) ? json_node_get_object (node) : NULL;
   if (g_strcmp0 (tf_json_member_string (object, "frame"), "carrington") != 0)
     {
-      form_error (error, _ ("This is not an outline: it must be an object with \"frame\": \"carrington\"."));
+      form_error (
+          error,
+          _ ("This is not an outline: it must be an object with \"frame\": \"carrington\"."));
       return NULL;
     }
   if (tf_json_member_array (object, "rings") == NULL)
@@ -194,7 +208,8 @@ tf_outline_read_json (JsonNode *node, GError **error)
   if (!read_time (object, &time, error))
     return NULL;
   g_autoptr (TfOutline) outline = tf_outline_start (time);
-  if (!read_rings (outline, object, "rings", FALSE, error) || !read_rings (outline, object, "left_out", TRUE, error)
+  if (!read_rings (outline, object, "rings", FALSE, error)
+      || !read_rings (outline, object, "left_out", TRUE, error)
       || !read_pins (outline, object, error))
     return NULL;
   return tf_outline_finish (g_steal_pointer (&outline), error);
@@ -207,7 +222,8 @@ tf_outline_from_text (const char *json, GError **error)
   g_autoptr (JsonNode) root = json_from_string (json != NULL ? json : "", &parse);
   if (parse != NULL)
     {
-      g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_FORM, _ ("The outline is not JSON: %s"), parse->message);
+      g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_FORM,
+                   _ ("The outline is not JSON: %s"), parse->message);
       return NULL;
     }
   return tf_outline_read_json (root, error);

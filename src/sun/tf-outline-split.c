@@ -38,7 +38,8 @@ corner (const TfRing *ring, guint k)
 
 /* Where the edge from corner @p to @q meets the endless line; @along: 0 at a, 1 at b. */
 static gboolean
-meet (const TfTangent *tangent, const Cut *cut, const Corner *p, const Corner *q, Corner *at, double *along)
+meet (const TfTangent *tangent, const Cut *cut, const Corner *p, const Corner *q, Corner *at,
+      double *along)
 {
   double s = side (cut, p->u, p->v), t = side (cut, q->u, q->v), unit[3];
   if ((s > 0.0) == (t > 0.0))
@@ -48,12 +49,14 @@ meet (const TfTangent *tangent, const Cut *cut, const Corner *p, const Corner *q
   at->v = p->v + f * (q->v - p->v);
   tf_tangent_lift (tangent, at->u, at->v, unit);
   at->vertex = tf_vertex_of (unit);
-  *along = ((at->u - cut->u) * cut->du + (at->v - cut->v) * cut->dv) / (cut->du * cut->du + cut->dv * cut->dv);
+  *along = ((at->u - cut->u) * cut->du + (at->v - cut->v) * cut->dv)
+           / (cut->du * cut->du + cut->dv * cut->dv);
   return TRUE;
 }
 
 static guint
-count_meetings (const TfTangent *tangent, const Cut *cut, const TfRing *ring, guint edges[2], Corner at[2])
+count_meetings (const TfTangent *tangent, const Cut *cut, const TfRing *ring, guint edges[2],
+                Corner at[2])
 {
   guint n = 0;
   for (guint k = 0; k < ring->n; k++)
@@ -95,7 +98,8 @@ signed_area (const GArray *part)
   double sum = 0.0;
   for (guint k = 0; k < part->len; k++)
     {
-      const Corner *p = &g_array_index (part, Corner, k), *q = &g_array_index (part, Corner, (k + 1) % part->len);
+      const Corner *p = &g_array_index (part, Corner, k),
+                   *q = &g_array_index (part, Corner, (k + 1) % part->len);
       sum += p->u * q->v - q->u * p->v;
     }
   return sum / 2.0;
@@ -106,7 +110,8 @@ signed_area (const GArray *part)
 static gboolean
 is_left (const Cut *cut, const GArray *part)
 {
-  const Corner *first = &g_array_index (part, Corner, 0), *last = &g_array_index (part, Corner, part->len - 1);
+  const Corner *first = &g_array_index (part, Corner, 0),
+               *last = &g_array_index (part, Corner, part->len - 1);
   double forward = (first->u - last->u) * cut->du + (first->v - last->v) * cut->dv;
   return (signed_area (part) > 0.0) == (forward > 0.0);
 }
@@ -146,7 +151,8 @@ part_contains (const GArray *part, double u, double v)
   gboolean in = FALSE;
   for (guint k = 0; k < part->len; k++)
     {
-      const Corner *p = &g_array_index (part, Corner, k), *q = &g_array_index (part, Corner, (k + 1) % part->len);
+      const Corner *p = &g_array_index (part, Corner, k),
+                   *q = &g_array_index (part, Corner, (k + 1) % part->len);
       if ((p->v > v) != (q->v > v) && u < p->u + (q->u - p->u) * (v - p->v) / (q->v - p->v))
         in = !in;
     }
@@ -211,7 +217,9 @@ cut_first_ring (Split *split, const TfOutline *outline, GError **error)
   if (n != 2)
     {
       g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
-                   _ ("The line crosses the outline %u times; draw it right across, so that it crosses twice."), n);
+                   _ ("The line crosses the outline %u times; draw it right across, so that it "
+                      "crosses twice."),
+                   n);
       return FALSE;
     }
   GArray *a = part_between (ring, edges[0], &at[0], edges[1], &at[1]);
@@ -231,8 +239,9 @@ place_cut (Split *split, TfVertex a, TfVertex b, GError **error)
   if (!tf_tangent_project (split->tangent, ua, &split->cut.u, &split->cut.v)
       || !tf_tangent_project (split->tangent, ub, &u, &v))
     {
-      g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
-                   _ ("The line ends 89 degrees or more from the outline; draw it across the outline."));
+      g_set_error (
+          error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
+          _ ("The line ends 89 degrees or more from the outline; draw it across the outline."));
       return FALSE;
     }
   split->cut.du = u - split->cut.u;
@@ -241,7 +250,8 @@ place_cut (Split *split, TfVertex a, TfVertex b, GError **error)
 }
 
 gboolean
-tf_outline_split (const TfOutline *outline, TfVertex a, TfVertex b, TfOutline **one, TfOutline **other, GError **error)
+tf_outline_split (const TfOutline *outline, TfVertex a, TfVertex b, TfOutline **one,
+                  TfOutline **other, GError **error)
 {
   Split split = { .tangent = &outline->tangent };
   *one = *other = NULL;

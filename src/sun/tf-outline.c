@@ -9,7 +9,7 @@
 #include "tf-constants.h"
 #include "tf-rotation.h"
 
-G_DEFINE_QUARK (tf-outline-error-quark, tf_outline_error)
+G_DEFINE_QUARK (tf - outline - error - quark, tf_outline_error)
 
 /* -- making ---------------------------------------------------------------------------------- */
 
@@ -74,7 +74,8 @@ check_vertices (const TfVertex *vertices, guint n, const char *name, GError **er
         || !(fabs (vertices[k].lon_deg) < 1e6))
       {
         g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
-                     _ ("Vertex %u of the outline's %s is no place on the Sun; give a finite longitude and a latitude "
+                     _ ("Vertex %u of the outline's %s is no place on the Sun; give a finite "
+                        "longitude and a latitude "
                         "from -90 to 90 degrees."),
                      k + 1, name);
         return FALSE;
@@ -83,8 +84,8 @@ check_vertices (const TfVertex *vertices, guint n, const char *name, GError **er
 }
 
 gboolean
-tf_outline_fill (TfOutline *outline, const TfVertex *vertices, guint n, gboolean left_out, const char *name,
-                 GError **error)
+tf_outline_fill (TfOutline *outline, const TfVertex *vertices, guint n, gboolean left_out,
+                 const char *name, GError **error)
 {
   if (!check_vertices (vertices, n, name, error))
     return FALSE;
@@ -134,10 +135,12 @@ tf_outline_finish (TfOutline *outline, GError **error)
 {
   g_autoptr (TfOutline) made = outline;
   if (made->rings->len == 0)
-    g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE, _ ("The outline has no ring; give at least one."));
-  else if (!tf_outline_project (made))
     g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
-                 _ ("The outline reaches further than 89 degrees from its centre; draw a smaller one."));
+                 _ ("The outline has no ring; give at least one."));
+  else if (!tf_outline_project (made))
+    g_set_error (
+        error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
+        _ ("The outline reaches further than 89 degrees from its centre; draw a smaller one."));
   else
     return g_steal_pointer (&made);
   return NULL;
@@ -153,11 +156,13 @@ tf_outline_new (TfTime time, const TfVertex *ring, guint n, GError **error)
 }
 
 TfOutline *
-tf_outline_new_cap (TfTime time, double carrington_lon_deg, double lat_deg, double radius_deg, guint n_vertices)
+tf_outline_new_cap (TfTime time, double carrington_lon_deg, double lat_deg, double radius_deg,
+                    guint n_vertices)
 {
   guint n = n_vertices == 0 ? 72 : MAX (n_vertices, 3);
   double centre[3], r = tan (radius_deg * TF_DEG);
-  if (!isfinite (carrington_lon_deg) || !(fabs (lat_deg) <= 90.0) || !(radius_deg > 0.0 && radius_deg < 89.0))
+  if (!isfinite (carrington_lon_deg) || !(fabs (lat_deg) <= 90.0)
+      || !(radius_deg > 0.0 && radius_deg < 89.0))
     return NULL;
   tf_sphere_unit (carrington_lon_deg, lat_deg, centre);
   TfTangent tangent = tf_tangent_at (centre);
@@ -188,12 +193,14 @@ fill_rings_of (TfOutline *outline, const TfOutline *from)
 }
 
 TfOutline *
-tf_outline_with_ring (const TfOutline *outline, const TfVertex *ring, guint n, gboolean left_out, GError **error)
+tf_outline_with_ring (const TfOutline *outline, const TfVertex *ring, guint n, gboolean left_out,
+                      GError **error)
 {
   g_autoptr (TfOutline) copy = tf_outline_start (outline->time);
   fill_rings_of (copy, outline);
   tf_outline_fill_pins_of (copy, outline);
-  if (!tf_outline_fill (copy, ring, n, left_out, left_out ? _ ("left-out area") : _ ("ring"), error))
+  if (!tf_outline_fill (copy, ring, n, left_out, left_out ? _ ("left-out area") : _ ("ring"),
+                        error))
     return NULL;
   return tf_outline_finish (g_steal_pointer (&copy), error);
 }
@@ -311,5 +318,6 @@ tf_outline_equal (const TfOutline *a, const TfOutline *b)
   gboolean unknown = !tf_time_is_known (a->time) && !tf_time_is_known (b->time);
   if (!unknown && !(fabs (a->time.s - b->time.s) < 2e-6))
     return FALSE;
-  return same_rings (a->rings, b->rings) && same_rings (a->left_out, b->left_out) && same_pins (a, b);
+  return same_rings (a->rings, b->rings) && same_rings (a->left_out, b->left_out)
+         && same_pins (a, b);
 }

@@ -9,7 +9,7 @@
 
 #include "tf-constants.h"
 
-#define J2000 2451545.0
+#define J2000     2451545.0
 #define MJD_J2000 51544.5
 
 static TfTime
@@ -44,10 +44,12 @@ tt_minus (TfTimeScale scale)
 /* Seconds are counted from the day's own 0 h with the day's own TAI - UTC, so that 23:59:60.5 and
  * seconds beyond the day come out right without asking how long the day is. */
 TfTime
-tf_time_from_calendar (int year, int month, int day, int hour, int minute, double second, TfTimeScale scale)
+tf_time_from_calendar (int year, int month, int day, int hour, int minute, double second,
+                       TfTimeScale scale)
 {
   double jd, mjd;
-  if (eraCal2jd (year, month, day, &jd, &mjd) != 0 || hour < 0 || hour > 24 || minute < 0 || minute > 59)
+  if (eraCal2jd (year, month, day, &jd, &mjd) != 0 || hour < 0 || hour > 24 || minute < 0
+      || minute > 59)
     return TF_TIME_UNKNOWN;
   double of_day = 3600.0 * hour + 60.0 * minute + second;
   double offset = tt_minus (scale);
@@ -150,7 +152,8 @@ tf_time_year (TfTime time)
 }
 
 gboolean
-tf_time_calendar (TfTime time, int *year, int *month, int *day, int *hour, int *minute, double *second)
+tf_time_calendar (TfTime time, int *year, int *month, int *day, int *hour, int *minute,
+                  double *second)
 {
   double jd1, jd2;
   int y, m, d, parts[4];
@@ -231,7 +234,8 @@ has_leap_second (int year, int month, int day)
 {
   double jd, mjd, before = 0.0, after = 0.0, fraction;
   int y, m, d;
-  if (eraCal2jd (year, month, day, &jd, &mjd) != 0 || eraJd2cal (jd, mjd + 1.0, &y, &m, &d, &fraction) != 0)
+  if (eraCal2jd (year, month, day, &jd, &mjd) != 0
+      || eraJd2cal (jd, mjd + 1.0, &y, &m, &d, &fraction) != 0)
     return FALSE;
   return eraDat (year, month, day, 1.0, &before) >= 0 && eraDat (y, m, d, 0.0, &after) >= 0
          && after - before > 0.5;

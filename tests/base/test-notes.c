@@ -9,8 +9,8 @@
 #include "tf-json.h"
 #include "tf-note.h"
 
-static const TfNoteKind *const tables[] = { tf_note_kinds_frame, tf_note_kinds_region, tf_note_kinds_laws,
-                                            tf_note_kinds_ledger };
+static const TfNoteKind *const tables[]
+    = { tf_note_kinds_frame, tf_note_kinds_region, tf_note_kinds_laws, tf_note_kinds_ledger };
 
 /* -- the tables ------------------------------------------------------------------------------ */
 
@@ -113,7 +113,8 @@ test_list (void)
   g_assert_cmpuint (tf_notes_get_n (notes), ==, 3);
   g_autofree char *codes = tf_notes_dup_codes (notes);
   g_assert_cmpstr (codes, ==, "hale-equator hints-counted");
-  tf_check_near ("the first of its code", tf_note_get_number (tf_notes_find (notes, "hints-counted"), 1), 2.0, 0.0);
+  tf_check_near ("the first of its code",
+                 tf_note_get_number (tf_notes_find (notes, "hints-counted"), 1), 2.0, 0.0);
   g_assert_null (tf_notes_find (notes, "hale-steep"));
   g_autofree char *none = tf_notes_dup_codes (NULL);
   g_assert_cmpstr (none, ==, "");
@@ -166,7 +167,8 @@ test_newer_version (void)
 static void
 test_damage (void)
 {
-  const char *const texts[] = { "", "{", "{}", "7", "[7]", "[[]]", "[[7]]", "[[\"hale-equator\"],{}]", "null" };
+  const char *const texts[]
+      = { "", "{", "{}", "7", "[7]", "[[]]", "[[7]]", "[[\"hale-equator\"],{}]", "null" };
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     {
       gboolean ok = TRUE;
@@ -196,8 +198,9 @@ test_json (void)
   json_builder_end_object (builder);
   g_autofree char *text = tf_json_dup_text (builder, FALSE);
   g_autofree char *sentence = tf_note_dup_text (tf_notes_get (notes, 0), TRUE);
-  g_autofree char *expected = g_strdup_printf (
-      "{\"refusal\":null,\"cautions\":[{\"code\":\"hale-equator\",\"text\":\"%s\"}],\"repairs\":[]}", sentence);
+  g_autofree char *expected = g_strdup_printf ("{\"refusal\":null,\"cautions\":[{\"code\":\"hale-"
+                                               "equator\",\"text\":\"%s\"}],\"repairs\":[]}",
+                                               sentence);
   g_assert_cmpstr (text, ==, expected);
 }
 

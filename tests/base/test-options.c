@@ -21,7 +21,8 @@ static const char *const kinds[] = { "plain", "fancy", NULL };
 
 static const TfOption table[] = {
   { "floor", TF_OPTION_NUMBER, "G", NAN, 0.0, 1e5, NULL, "the floor", offsetof (Params, floor) },
-  { "radius", TF_OPTION_NUMBER, "deg", 0.1, 0.0, 90.0, NULL, "the radius", offsetof (Params, radius) },
+  { "radius", TF_OPTION_NUMBER, "deg", 0.1, 0.0, 90.0, NULL, "the radius",
+    offsetof (Params, radius) },
   { "rounds", TF_OPTION_INT, "", 500.0, 1.0, 1000.0, NULL, "how often", offsetof (Params, rounds) },
   { "kind", TF_OPTION_CHOICE, "", 1.0, 0.0, 1.0, kinds, "which kind", offsetof (Params, kind) },
   { "even", TF_OPTION_BOOL, "", 0.0, 0.0, 1.0, NULL, "whether", offsetof (Params, even) },
@@ -72,10 +73,13 @@ test_canonical (void)
 static void
 test_refusals (void)
 {
-  const char *const rows[][2] = { { "radius", "90.1" }, { "radius", "-1" },   { "radius", "" },      { "radius", "nan" },
-                                  { "radius", "1,5" },  { "radius", "5 deg" }, { "floor", "inf" },   { "rounds", "0" },
-                                  { "rounds", "1.5" },  { "rounds", "99999999999999999999" },        { "kind", "Fancy" },
-                                  { "kind", "0" },      { "even", "1" },      { "even", "true" } };
+  const char *const rows[][2] = { { "radius", "90.1" }, { "radius", "-1" },
+                                  { "radius", "" },     { "radius", "nan" },
+                                  { "radius", "1,5" },  { "radius", "5 deg" },
+                                  { "floor", "inf" },   { "rounds", "0" },
+                                  { "rounds", "1.5" },  { "rounds", "99999999999999999999" },
+                                  { "kind", "Fancy" },  { "kind", "0" },
+                                  { "even", "1" },      { "even", "true" } };
   Params p;
   tf_options_reset (table, &p);
   g_autofree char *before = tf_options_dup_canonical (table, &p, "m");
@@ -111,20 +115,24 @@ test_json (void)
   p.radius = 1.0 / 3.0;
   tf_options_build_json (table, &p, builder);
   g_autofree char *text = tf_json_dup_text (builder, FALSE);
-  g_assert_cmpstr (text, ==, "{\"floor\":null,\"radius\":0.3333333333333333,\"rounds\":500,\"kind\":\"fancy\",\"even\":false}");
+  g_assert_cmpstr (text, ==,
+                   "{\"floor\":null,\"radius\":0.3333333333333333,\"rounds\":500,\"kind\":"
+                   "\"fancy\",\"even\":false}");
   g_autoptr (JsonNode) root = NULL;
   tf_options_reset (table, &q);
   g_assert_true (tf_options_read_json (table, &q, parse (text, &root), &error));
   g_assert_no_error (error);
-  g_autofree char *a = tf_options_dup_canonical (table, &p, "m"), *b = tf_options_dup_canonical (table, &q, "m");
+  g_autofree char *a = tf_options_dup_canonical (table, &p, "m"),
+                  *b = tf_options_dup_canonical (table, &q, "m");
   g_assert_cmpstr (a, ==, b);
 }
 
 static void
 test_bad_json (void)
 {
-  const char *const texts[] = { "{\"radius\":[1]}", "{\"radius\":{}}", "{\"radius\":null}", "{\"radius\":100}",
-                                "{\"kind\":1}", "{\"even\":1}", "{\"rounds\":1.5}", "{\"other\":1}" };
+  const char *const texts[]
+      = { "{\"radius\":[1]}", "{\"radius\":{}}", "{\"radius\":null}", "{\"radius\":100}",
+          "{\"kind\":1}",     "{\"even\":1}",    "{\"rounds\":1.5}",  "{\"other\":1}" };
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     {
       Params p;
@@ -151,7 +159,8 @@ test_command_line (void)
 {
   Params p;
   g_autoptr (GError) error = NULL;
-  const char *const good[] = { "program", "--radius", "12.5", "--kind=plain", "--even", "yes", NULL };
+  const char *const good[]
+      = { "program", "--radius", "12.5", "--kind=plain", "--even", "yes", NULL };
   const char *const bad[] = { "program", "--radius", "wide", NULL };
   g_assert_true (parse_line (&p, good, &error));
   g_assert_no_error (error);

@@ -45,7 +45,8 @@ test_read (void)
 {
   double value = 7.0;
   gint64 whole = 7;
-  const char *const bad[] = { "", " ", "nan", "inf", "-inf", "1,5", "1.5x", "0x10", "1e999", "1 2", "+-1", ".", "e5", "1e" };
+  const char *const bad[] = { "",     " ",     "nan", "inf", "-inf", "1,5", "1.5x",
+                              "0x10", "1e999", "1 2", "+-1", ".",    "e5",  "1e" };
   for (guint k = 0; k < G_N_ELEMENTS (bad); k++)
     if (tf_number_read (bad[k], &value))
       {
@@ -94,7 +95,8 @@ use_decimal_comma (const char *folder)
       return TRUE;
   g_autofree char *out = g_build_filename (folder, "de_DE.UTF-8", NULL);
   const char *argv[] = { "localedef", "-i", "de_DE", "-f", "UTF-8", out, NULL };
-  if (!g_spawn_sync (NULL, (char **)argv, NULL, G_SPAWN_SEARCH_PATH | G_SPAWN_STDERR_TO_DEV_NULL | G_SPAWN_STDOUT_TO_DEV_NULL,
+  if (!g_spawn_sync (NULL, (char **)argv, NULL,
+                     G_SPAWN_SEARCH_PATH | G_SPAWN_STDERR_TO_DEV_NULL | G_SPAWN_STDOUT_TO_DEV_NULL,
                      NULL, NULL, NULL, NULL, NULL, NULL))
     return FALSE;
   g_setenv ("LOCPATH", folder, TRUE);
@@ -125,7 +127,8 @@ check_under_comma (void)
   g_snprintf (plain, sizeof plain, "%.1f", 0.5);
   g_assert_cmpstr (plain, ==, "0,5"); /* the locale is really in force */
   g_autofree char *file = tf_number_dup (0.5), *form = tf_number_dup_form (0.5, ".2f", FALSE);
-  g_autofree char *local = tf_number_dup_form (1234.5, ".2f", TRUE), *whole = tf_number_dup_form (7.0, ".0f", TRUE);
+  g_autofree char *local = tf_number_dup_form (1234.5, ".2f", TRUE),
+                  *whole = tf_number_dup_form (7.0, ".0f", TRUE);
   g_assert_cmpstr (file, ==, "0.5");
   g_assert_cmpstr (form, ==, "0.50");
   g_assert_cmpstr (local, ==, "1234,50");
@@ -178,9 +181,10 @@ sample (void)
   return builder;
 }
 
-static const char sample_text[] = "{\"text\":\"a\\\"b\\\\c\\n\\t\\u0001é/\",\"none\":null,\"nan\":null,\"inf\":null,"
-                                  "\"tenth\":0.1,\"int\":-9223372036854775808,\"yes\":true,\"null\":null,"
-                                  "\"list\":[1,null,-2.5]}";
+static const char sample_text[]
+    = "{\"text\":\"a\\\"b\\\\c\\n\\t\\u0001é/\",\"none\":null,\"nan\":null,\"inf\":null,"
+      "\"tenth\":0.1,\"int\":-9223372036854775808,\"yes\":true,\"null\":null,"
+      "\"list\":[1,null,-2.5]}";
 
 static void
 test_json_compact (void)
@@ -212,7 +216,8 @@ test_json_members (void)
   g_assert_null (tf_json_member_string (object, "absent"));
   g_assert_null (tf_json_member_string (NULL, "text"));
   tf_check_near ("a number", tf_json_member_number (object, "tenth"), 0.1, 0.0);
-  tf_check_near ("an integer as a number", tf_json_member_number (object, "int"), -9223372036854775808.0, 0.0);
+  tf_check_near ("an integer as a number", tf_json_member_number (object, "int"),
+                 -9223372036854775808.0, 0.0);
   tf_check_nan ("null", tf_json_member_number (object, "nan"));
   tf_check_nan ("a text", tf_json_member_number (object, "text"));
   tf_check_nan ("absent", tf_json_member_number (object, "absent"));

@@ -42,9 +42,11 @@ static void
 random_observer (GRand *rand, Header *h)
 {
   double au = between (rand, 0.2, 1.1);
-  h->time = tf_time_add (tf_time_from_year (2000.0), rint (between (rand, 0.0, 26.0 * 365.0 * TF_DAY_S)));
+  h->time = tf_time_add (tf_time_from_year (2000.0),
+                         rint (between (rand, 0.0, 26.0 * 365.0 * TF_DAY_S)));
   h->observer.distance_m = au * TF_AU_M;
-  h->observer.b0_deg = g_rand_boolean (rand) ? between (rand, -7.25, 7.25) : between (rand, -34.0, 34.0);
+  h->observer.b0_deg
+      = g_rand_boolean (rand) ? between (rand, -7.25, 7.25) : between (rand, -34.0, 34.0);
   h->observer.stonyhurst_lon_deg = g_rand_boolean (rand) ? 0.0 : between (rand, -180.0, 180.0);
   h->observer.carrington_lon_deg
       = tf_observer_carrington (h->time, h->observer.stonyhurst_lon_deg, h->observer.distance_m);
@@ -114,22 +116,25 @@ print_pixel (int k, const Header *h, const TfGeometry *g, double x, double y)
     tf_geometry_sun_to_pixel (g, p.carrington_lon_deg, p.lat_deg, &sun_x, &sun_y, NULL);
   tf_geometry_row_sun (g, y, x, 1, unit, &mu, &area);
   tf_sphere_lonlat (unit[0], &row_lon, &row_lat);
-  printf ("%d,%s,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,", k, iso, h->crota_deg,
-          h->cdelt[0], h->cdelt[1], h->pc[0][0], h->pc[0][1], h->pc[1][0], h->pc[1][1], h->crpix[0], h->crpix[1],
-          h->crval[0], h->crval[1], h->lonpole);
+  printf ("%d,%s,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,", k, iso,
+          h->crota_deg, h->cdelt[0], h->cdelt[1], h->pc[0][0], h->pc[0][1], h->pc[1][0],
+          h->pc[1][1], h->crpix[0], h->crpix[1], h->crval[0], h->crval[1], h->lonpole);
   printf ("%.17g,%.17g,%.17g,%.17g,%.17g,", h->observer.distance_m, h->observer.b0_deg,
           h->observer.stonyhurst_lon_deg, h->observer.carrington_lon_deg, h->radius_mm);
-  printf ("%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,", x, y, tx, ty, back_x, back_y,
-          p.stonyhurst_lon_deg, p.carrington_lon_deg, p.lat_deg, p.cmd_deg, p.mu, tf_geometry_mu (g, x, y));
-  printf ("%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", row_lon, row_lat, mu, area, tf_geometry_area (g, x, y), sun_x,
-          sun_y);
+  printf ("%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,", x, y, tx, ty,
+          back_x, back_y, p.stonyhurst_lon_deg, p.carrington_lon_deg, p.lat_deg, p.cmd_deg, p.mu,
+          tf_geometry_mu (g, x, y));
+  printf ("%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", row_lon, row_lat, mu, area,
+          tf_geometry_area (g, x, y), sun_x, sun_y);
 }
 
 static void
 print_geometry (GRand *rand)
 {
-  printf ("case,time,crota,cdelt1,cdelt2,pc11,pc12,pc21,pc22,crpix1,crpix2,crval1,crval2,lonpole,distance_m,b0,"
-          "stonyhurst_observer,carrington_observer,radius_mm,x,y,tx,ty,back_x,back_y,stonyhurst,carrington,lat,cmd,mu,"
+  printf ("case,time,crota,cdelt1,cdelt2,pc11,pc12,pc21,pc22,crpix1,crpix2,crval1,crval2,lonpole,"
+          "distance_m,b0,"
+          "stonyhurst_observer,carrington_observer,radius_mm,x,y,tx,ty,back_x,back_y,stonyhurst,"
+          "carrington,lat,cmd,mu,"
           "mu_short,row_lon,row_lat,row_mu,row_area,area,sun_x,sun_y\n");
   for (int k = 0; k < HEADERS; k++)
     {
@@ -149,7 +154,8 @@ print_geometry (GRand *rand)
 static void
 print_maps (GRand *rand)
 {
-  printf ("case,kind,width,height,crpix1,crpix2,crval1,cdelt1,step2,x,y,carrington,lat,back_x,back_y\n");
+  printf ("case,kind,width,height,crpix1,crpix2,crval1,cdelt1,step2,x,y,carrington,lat,back_x,back_"
+          "y\n");
   for (int k = 0; k < MAPS; k++)
     {
       double step = 360.0 / g_rand_int_range (rand, 90, 2000);
@@ -169,12 +175,14 @@ print_maps (GRand *rand)
       for (int j = 0; j < PIXELS; j++)
         {
           TfPlace p;
-          double x = between (rand, 0.6, width + 0.4), y = between (rand, 0.6, height + 0.4), bx, by;
+          double x = between (rand, 0.6, width + 0.4), y = between (rand, 0.6, height + 0.4), bx,
+                 by;
           tf_geometry_pixel_to_sun (&g, x, y, &p);
           tf_geometry_sun_to_pixel (&g, p.carrington_lon_deg, p.lat_deg, &bx, &by, NULL);
-          printf ("%d,%s,%u,%u,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", k,
-                  tf_projection_name (g.projection), width, height, g.crpix[0], g.crpix[1], g.crval_deg[0], g.cd[0][0],
-                  g.cd[1][1], x, y, p.carrington_lon_deg, p.lat_deg, bx, by);
+          printf ("%d,%s,%u,%u,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n",
+                  k, tf_projection_name (g.projection), width, height, g.crpix[0], g.crpix[1],
+                  g.crval_deg[0], g.cd[0][0], g.cd[1][1], x, y, p.carrington_lon_deg, p.lat_deg, bx,
+                  by);
         }
     }
 }
@@ -207,13 +215,14 @@ print_times (GRand *rand)
         print_time (year, half ? 12 : 6, half ? 31 : 30, 23, 59, 59.75);
         print_time (half ? year + 1 : year, half ? 1 : 7, 1, 0, 0, 0.25);
       }
-  const int leaps[][2] = { { 1972, 6 }, { 1972, 12 }, { 1990, 12 }, { 1998, 12 }, { 2005, 12 },
-                           { 2008, 12 }, { 2012, 6 }, { 2015, 6 },  { 2016, 12 } };
+  const int leaps[][2] = { { 1972, 6 },  { 1972, 12 }, { 1990, 12 }, { 1998, 12 }, { 2005, 12 },
+                           { 2008, 12 }, { 2012, 6 },  { 2015, 6 },  { 2016, 12 } };
   for (guint k = 0; k < G_N_ELEMENTS (leaps); k++)
     print_time (leaps[k][0], leaps[k][1], leaps[k][1] == 6 ? 30 : 31, 23, 59, 60.5);
   for (int k = 0; k < TIMES; k++)
-    print_time (g_rand_int_range (rand, k % 3 == 0 ? 1700 : 1972, 2027), g_rand_int_range (rand, 1, 13),
-                g_rand_int_range (rand, 1, 29), g_rand_int_range (rand, 0, 24), g_rand_int_range (rand, 0, 60),
+    print_time (g_rand_int_range (rand, k % 3 == 0 ? 1700 : 1972, 2027),
+                g_rand_int_range (rand, 1, 13), g_rand_int_range (rand, 1, 29),
+                g_rand_int_range (rand, 0, 24), g_rand_int_range (rand, 0, 60),
                 floor (between (rand, 0.0, 60e6)) * 1e-6);
 }
 
@@ -223,9 +232,10 @@ print_earth_at (const char *what, TfTime time)
   double p, b0, l0;
   TfObserver earth = tf_observer_earth (time);
   tf_observer_meeus (time, &p, &b0, &l0);
-  printf ("%s,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", what, tf_time_jd (time, TF_SCALE_TT),
-          earth.b0_deg, earth.carrington_lon_deg, tf_earth_l0 (time, TF_L0_ALMANAC), earth.distance_m / TF_AU_M,
-          tf_earth_p (time), tf_carrington_rotation (time), p, b0, l0);
+  printf ("%s,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", what,
+          tf_time_jd (time, TF_SCALE_TT), earth.b0_deg, earth.carrington_lon_deg,
+          tf_earth_l0 (time, TF_L0_ALMANAC), earth.distance_m / TF_AU_M, tf_earth_p (time),
+          tf_carrington_rotation (time), p, b0, l0);
 }
 
 static void
@@ -238,7 +248,8 @@ print_earth (GRand *rand)
   for (int rotation = 2132; rotation <= 2147; rotation++)
     print_earth_at ("start", tf_carrington_time (rotation));
   for (int k = 0; k < PLACES; k++)
-    print_earth_at ("random", tf_time_from_jd (rint (between (rand, 2433282.0, 2466154.0)), between (rand, 0.0, 1.0), TF_SCALE_TT));
+    print_earth_at ("random", tf_time_from_jd (rint (between (rand, 2433282.0, 2466154.0)),
+                                               between (rand, 0.0, 1.0), TF_SCALE_TT));
 }
 
 static void

@@ -31,13 +31,15 @@ test_vectors (void)
     for (int which = 0; which < 2; which++)
       {
         TfGeometry g;
-        g_assert_true (tf_geometry_make_disk (&g, 4096, 4096, 2040.3, 2051.2, 0.504, turn, &o, which ? 696.0 : 695.7));
+        g_assert_true (tf_geometry_make_disk (&g, 4096, 4096, 2040.3, 2051.2, 0.504, turn, &o,
+                                              which ? 696.0 : 695.7));
         tf_check_angle ("north angle", tf_geometry_north_angle (&g), turn, 1e-9);
         for (int k = 0; k < 5; k++)
           {
             double x, y, tx, ty;
             TfPlace p;
-            g_assert_true (tf_geometry_projective_to_pixel (&g, places[k][0], places[k][1], &x, &y));
+            g_assert_true (
+                tf_geometry_projective_to_pixel (&g, places[k][0], places[k][1], &x, &y));
             tf_geometry_pixel_to_projective (&g, x, y, &tx, &ty);
             tf_check_near ("theta x", tx, places[k][0], 1e-8);
             tf_check_near ("theta y", ty, places[k][1], 1e-8);
@@ -54,7 +56,8 @@ static void
 test_mu (void)
 {
   TfObserver o = observer (1.0, 0.0, 0.0, 100.0);
-  const double degrees[] = { 0.0, 45.0, 60.0, 70.0 }, expected[] = { 1.0, 0.7048, 0.49650, 0.33790 };
+  const double degrees[] = { 0.0, 45.0, 60.0, 70.0 },
+               expected[] = { 1.0, 0.7048, 0.49650, 0.33790 };
   TfGeometry g;
   g_assert_true (tf_geometry_make_disk (&g, 1024, 1024, 512.5, 512.5, 2.0, 30.0, &o, TF_RADIUS_MM));
   for (int k = 0; k < 4; k++)
@@ -76,12 +79,17 @@ test_area (void)
 {
   TfObserver o = observer (1.0, 0.0, 0.0, 0.0);
   TfGeometry g;
-  g_assert_true (tf_geometry_make_disk (&g, 4096, 4096, 2048.5, 2048.5, 0.5, 0.0, &o, TF_RADIUS_MM));
-  tf_check_near ("0.5 arcsec at the centre", sqrt (tf_geometry_area (&g, 2048.5, 2048.5)), 0.3609, 1e-4);
-  g_assert_true (tf_geometry_make_disk (&g, 1024, 1024, 512.5, 512.5, 1.98, 77.0, &o, TF_RADIUS_MM));
-  tf_check_near ("1.98 arcsec at the centre", sqrt (tf_geometry_area (&g, 512.5, 512.5)), 1.429, 1e-3);
+  g_assert_true (
+      tf_geometry_make_disk (&g, 4096, 4096, 2048.5, 2048.5, 0.5, 0.0, &o, TF_RADIUS_MM));
+  tf_check_near ("0.5 arcsec at the centre", sqrt (tf_geometry_area (&g, 2048.5, 2048.5)), 0.3609,
+                 1e-4);
+  g_assert_true (
+      tf_geometry_make_disk (&g, 1024, 1024, 512.5, 512.5, 1.98, 77.0, &o, TF_RADIUS_MM));
+  tf_check_near ("1.98 arcsec at the centre", sqrt (tf_geometry_area (&g, 512.5, 512.5)), 1.429,
+                 1e-3);
   /* All pixels together are the cap that is seen, 2 pi R^2 (1 - R/D), but for the ragged limb. */
-  double sum = 0.0, seen = 2.0 * TF_PI * TF_RADIUS_MM * TF_RADIUS_MM * (1.0 - TF_RADIUS_MM / (TF_AU_M * 1e-6));
+  double sum = 0.0,
+         seen = 2.0 * TF_PI * TF_RADIUS_MM * TF_RADIUS_MM * (1.0 - TF_RADIUS_MM / (TF_AU_M * 1e-6));
   double inner = 0.0, mu[1024], area[1024];
   for (int y = 1; y <= 1024; y++)
     {
@@ -95,7 +103,9 @@ test_area (void)
   tf_check_near ("area of the disk", (sum + inner) / seen, 1.0, 0.03);
   /* mu >= 0.3 is a cap of psi = acos (mu) - asin ((R/D) sin acos mu), Thompson 2006. */
   double psi = acos (0.3) - asin (TF_RADIUS_MM / (TF_AU_M * 1e-6) * sqrt (1.0 - 0.09));
-  tf_check_near ("area within mu = 0.3", inner / (2.0 * TF_PI * TF_RADIUS_MM * TF_RADIUS_MM * (1.0 - cos (psi))), 1.0, 2e-3);
+  tf_check_near ("area within mu = 0.3",
+                 inner / (2.0 * TF_PI * TF_RADIUS_MM * TF_RADIUS_MM * (1.0 - cos (psi))), 1.0,
+                 2e-3);
 }
 
 static void
@@ -119,7 +129,8 @@ check_round_trip (const TfGeometry *g, double lon, double lat)
   tf_check_between ("Stonyhurst longitude", p.stonyhurst_lon_deg, -180.0, 180.0);
   tf_check_angle ("Stonyhurst of Carrington", tf_geometry_stonyhurst_of (g, p.carrington_lon_deg),
                   p.stonyhurst_lon_deg, 1e-9);
-  tf_check_angle ("CMD", p.cmd_deg, p.carrington_lon_deg - tf_geometry_central_carrington (g), 1e-9);
+  tf_check_angle ("CMD", p.cmd_deg, p.carrington_lon_deg - tf_geometry_central_carrington (g),
+                  1e-9);
 }
 
 /* Near and far observers, off the Earth's line, seam and poles in view, every turn. */
@@ -129,9 +140,11 @@ test_round_trips (void)
   for (int turn = 0; turn < 360; turn += 20)
     for (int k = 0; k < 4; k++)
       {
-        TfObserver o = observer (0.2 + 0.3 * k, -7.0 + 20.0 * k, -179.0 + 90.0 * k, 359.5 - 45.0 * k);
+        TfObserver o
+            = observer (0.2 + 0.3 * k, -7.0 + 20.0 * k, -179.0 + 90.0 * k, 359.5 - 45.0 * k);
         TfGeometry g;
-        g_assert_true (tf_geometry_make_disk (&g, 512, 400, -300.0 * k, 200.0 + turn, 5.0, turn, &o, 696.0));
+        g_assert_true (
+            tf_geometry_make_disk (&g, 512, 400, -300.0 * k, 200.0 + turn, 5.0, turn, &o, 696.0));
         for (double lat = -90.0; lat <= 90.0; lat += 15.0)
           for (double lon = -180.0; lon < 360.0; lon += 24.0)
             check_round_trip (&g, lon, lat);
@@ -154,13 +167,15 @@ test_limb (void)
   tf_check_near ("centre x", cx, 500.0, 1e-9);
   tf_check_near ("centre y", cy, 530.0, 1e-9);
   double radius = tf_geometry_disk_radius (&g);
-  tf_check_near ("radius, pixels", radius, tan (tf_geometry_radius_arcsec (&g) * TF_ARCSEC) / (2.0 * TF_ARCSEC), 1e-6);
+  tf_check_near ("radius, pixels", radius,
+                 tan (tf_geometry_radius_arcsec (&g) * TF_ARCSEC) / (2.0 * TF_ARCSEC), 1e-6);
   for (double angle = 0.0; angle < 6.28; angle += 0.1)
     {
       double c = cos (angle), s = sin (angle), unit[1][3], mu, area;
       float short_mu;
       TfPlace p;
-      g_assert_true (tf_geometry_pixel_to_sun (&g, cx + (radius - 1e-3) * c, cy + (radius - 1e-3) * s, &p));
+      g_assert_true (
+          tf_geometry_pixel_to_sun (&g, cx + (radius - 1e-3) * c, cy + (radius - 1e-3) * s, &p));
       tf_check_between ("mu just inside", p.mu, 0.0, 0.01);
       double x = cx + (radius + 1e-3) * c, y = cy + (radius + 1e-3) * s;
       g_assert_false (tf_geometry_pixel_to_sun (&g, x, y, &p));
@@ -186,7 +201,7 @@ test_limb (void)
 static void
 check_row (const TfGeometry *g, double y, double x0, guint n)
 {
-  g_autofree double(*unit)[3] = g_malloc_n (n, sizeof *unit);
+  g_autofree double (*unit)[3] = g_malloc_n (n, sizeof *unit);
   g_autofree double *mu = g_new (double, n), *area = g_new (double, n);
   g_autofree float *short_mu = g_new (float, n);
   tf_geometry_row_sun (g, y, x0, n, unit, mu, area);
@@ -204,7 +219,8 @@ check_row (const TfGeometry *g, double y, double x0, guint n)
         }
       tf_sphere_unit (p.carrington_lon_deg, p.lat_deg, expected);
       for (int j = 0; j < 3; j++)
-        tf_check_near ("unit vector", unit[k][j], expected[j], p.mu > 0.01 || isnan (p.mu) ? 1e-10 : 1e-6);
+        tf_check_near ("unit vector", unit[k][j], expected[j],
+                       p.mu > 0.01 || isnan (p.mu) ? 1e-10 : 1e-6);
       tf_check_near ("area", area[k] / tf_geometry_area (g, x0 + k, y), 1.0, 1e-8);
       if (tf_geometry_is_map (g))
         {
@@ -227,12 +243,14 @@ awkward (int seed)
     .projection = TF_PROJECTION_TAN,
     .width = 1000,
     .height = 800,
-    .crpix = { g_rand_double_range (rand, -2000.0, 3000.0), g_rand_double_range (rand, -2000.0, 3000.0) },
+    .crpix
+    = { g_rand_double_range (rand, -2000.0, 3000.0), g_rand_double_range (rand, -2000.0, 3000.0) },
     .crval_deg = { g_rand_double_range (rand, -0.4, 0.4), g_rand_double_range (rand, -0.4, 0.4) },
     .cd = { { s1 * cos (turn), -s2 * sin (turn) }, { s1 * sin (turn + 0.01), s2 * cos (turn) } },
     .lonpole_deg = g_rand_boolean (rand) ? 180.0 : g_rand_double_range (rand, -180.0, 180.0),
-    .observer = observer (g_rand_double_range (rand, 0.2, 1.1), g_rand_double_range (rand, -40.0, 40.0),
-                          g_rand_double_range (rand, -180.0, 180.0), g_rand_double_range (rand, 0.0, 360.0)),
+    .observer
+    = observer (g_rand_double_range (rand, 0.2, 1.1), g_rand_double_range (rand, -40.0, 40.0),
+                g_rand_double_range (rand, -180.0, 180.0), g_rand_double_range (rand, 0.0, 360.0)),
     .radius_mm = 695.7,
   };
   g_assert_true (tf_geometry_make (&g));
@@ -404,11 +422,14 @@ test_refusals (void)
 static void
 test_separations (void)
 {
-  const double rows[][5] = { { 24, 15, 16, 17, 7.9450 }, { 24, -15, 16, -17, 7.9450 }, { 24, 17, 16, 15, 7.9450 },
-                             { 40, 28, 25, 33, 13.8412 }, { 5, 20, 5, 24, 4.0 }, { -10, 8, -2, 10, 8.1501 },
-                             { 3, 0.5, -3, -0.5, 6.0827 } };
+  const double rows[][5]
+      = { { 24, 15, 16, 17, 7.9450 },  { 24, -15, 16, -17, 7.9450 }, { 24, 17, 16, 15, 7.9450 },
+          { 40, 28, 25, 33, 13.8412 }, { 5, 20, 5, 24, 4.0 },        { -10, 8, -2, 10, 8.1501 },
+          { 3, 0.5, -3, -0.5, 6.0827 } };
   for (guint k = 0; k < G_N_ELEMENTS (rows); k++)
-    tf_check_near ("separation", tf_sphere_distance (rows[k][0], rows[k][1], rows[k][2], rows[k][3]), rows[k][4], 5e-5);
+    tf_check_near ("separation",
+                   tf_sphere_distance (rows[k][0], rows[k][1], rows[k][2], rows[k][3]), rows[k][4],
+                   5e-5);
   tf_check_near ("over the seam", tf_sphere_distance (359.5, 0.0, 0.5, 0.0), 1.0, 1e-12);
   tf_check_near ("opposite", tf_sphere_distance (10.0, 20.0, 190.0, -20.0), 180.0, 1e-6);
   tf_check_near ("tiny", tf_sphere_distance (10.0, 20.0, 10.0, 20.0 + 1e-10), 1e-10, 1e-14);

@@ -11,19 +11,22 @@
 static TfTime
 tt (int year, int month, double day)
 {
-  return tf_time_add (tf_time_from_calendar (year, month, 1, 0, 0, 0.0, TF_SCALE_TT), (day - 1.0) * TF_DAY_S);
+  return tf_time_add (tf_time_from_calendar (year, month, 1, 0, 0, 0.0, TF_SCALE_TT),
+                      (day - 1.0) * TF_DAY_S);
 }
 
 /* JPL Horizons, daily list at 0 h TT of 2013, as quoted in the test suite of the sunpy library. */
-static const double horizons_b0[12] = { -3.034687, -6.031910, -7.219984, -6.543092, -4.168016, -0.663804,
-                                        2.873030,  5.784693,  7.194559,  6.719875,  4.378979,  0.881068 };
-static const double horizons_l0[12] = { 326.989970, 278.789894, 270.072186, 221.440599, 185.306476, 135.303097,
-                                        98.221806,  48.035951,  358.289921, 322.226009, 273.315206, 237.836959 };
+static const double horizons_b0[12]
+    = { -3.034687, -6.031910, -7.219984, -6.543092, -4.168016, -0.663804,
+        2.873030,  5.784693,  7.194559,  6.719875,  4.378979,  0.881068 };
+static const double horizons_l0[12]
+    = { 326.989970, 278.789894, 270.072186, 221.440599, 185.306476, 135.303097,
+        98.221806,  48.035951,  358.289921, 322.226009, 273.315206, 237.836959 };
 /* Astronomical Almanac 2013, section C, as quoted there. */
 static const double almanac_l0[12] = { 326.98, 278.78, 270.07, 221.44, 185.30, 135.30,
                                        98.22,  48.03,  358.28, 322.22, 273.31, 237.83 };
-static const double almanac_p[12] = { 1.98, -12.23, -21.55, -26.15, -24.11, -15.39,
-                                      -2.64, 10.85, 21.08, 25.97, 24.47, 16.05 };
+static const double almanac_p[12]
+    = { 1.98, -12.23, -21.55, -26.15, -24.11, -15.39, -2.64, 10.85, 21.08, 25.97, 24.47, 16.05 };
 
 static void
 test_horizons (void)
@@ -50,8 +53,9 @@ test_almanac (void)
       tf_check_near ("P", tf_earth_p (time), almanac_p[k], 0.01);
     }
   tf_check_near ("the two conventions differ by the aberration and R/c",
-                 tf_earth_l0 (tt (2013, 1, 1.0), TF_L0_IMAGE) - tf_earth_l0 (tt (2013, 1, 1.0), TF_L0_ALMANAC), 0.0054,
-                 2e-4);
+                 tf_earth_l0 (tt (2013, 1, 1.0), TF_L0_IMAGE)
+                     - tf_earth_l0 (tt (2013, 1, 1.0), TF_L0_ALMANAC),
+                 0.0054, 2e-4);
 }
 
 /* Meeus, Astronomical Algorithms, 2nd ed., example 29.a, 1992 October 13.0 TD. */
@@ -77,13 +81,16 @@ test_rotation_starts (void)
   {
     int number, year, month;
     double day;
-  } rows[] = { { 2132, 2012, 12, 29.49 }, { 2133, 2013, 1, 25.83 }, { 2134, 2013, 2, 22.17 }, { 2135, 2013, 3, 21.49 },
-               { 2136, 2013, 4, 17.78 },  { 2137, 2013, 5, 15.02 }, { 2138, 2013, 6, 11.22 }, { 2139, 2013, 7, 8.42 },
-               { 2140, 2013, 8, 4.63 },   { 2141, 2013, 8, 31.87 }, { 2142, 2013, 9, 28.14 }, { 2143, 2013, 10, 25.43 },
-               { 2144, 2013, 11, 21.73 }, { 2145, 2013, 12, 19.05 }, { 2146, 2014, 1, 15.38 }, { 2147, 2014, 2, 11.73 } };
+  } rows[] = { { 2132, 2012, 12, 29.49 }, { 2133, 2013, 1, 25.83 },  { 2134, 2013, 2, 22.17 },
+               { 2135, 2013, 3, 21.49 },  { 2136, 2013, 4, 17.78 },  { 2137, 2013, 5, 15.02 },
+               { 2138, 2013, 6, 11.22 },  { 2139, 2013, 7, 8.42 },   { 2140, 2013, 8, 4.63 },
+               { 2141, 2013, 8, 31.87 },  { 2142, 2013, 9, 28.14 },  { 2143, 2013, 10, 25.43 },
+               { 2144, 2013, 11, 21.73 }, { 2145, 2013, 12, 19.05 }, { 2146, 2014, 1, 15.38 },
+               { 2147, 2014, 2, 11.73 } };
   for (guint k = 0; k < G_N_ELEMENTS (rows); k++)
     {
-      TfTime start = tf_carrington_time (rows[k].number), printed = tt (rows[k].year, rows[k].month, rows[k].day);
+      TfTime start = tf_carrington_time (rows[k].number),
+             printed = tt (rows[k].year, rows[k].month, rows[k].day);
       tf_check_near ("start of a rotation, days", (start.s - printed.s) / TF_DAY_S, 0.0, 0.01);
       tf_check_near ("its number", tf_carrington_rotation (start), rows[k].number, 1e-6);
       tf_check_near ("L0 there", tf_wrap_180 (tf_earth_l0 (start, TF_L0_IMAGE)), 0.0, 1e-5);
@@ -102,7 +109,8 @@ test_rotation_runs_on (void)
       before = now;
     }
   for (double rotation = 1.0; rotation < 2600.0; rotation += 111.37)
-    tf_check_near ("there and back", tf_carrington_rotation (tf_carrington_time (rotation)), rotation, 4e-7);
+    tf_check_near ("there and back", tf_carrington_rotation (tf_carrington_time (rotation)),
+                   rotation, 4e-7);
 }
 
 /* At the Earth it is L0; nearer the Sun the picture is younger, and the Sun has turned on by
@@ -112,8 +120,10 @@ test_other_observers (void)
 {
   TfTime time = tt (2013, 10, 12.25);
   TfObserver earth = tf_observer_earth (time);
-  tf_check_near ("at the Earth", tf_observer_carrington (time, 0.0, earth.distance_m), earth.carrington_lon_deg, 1e-12);
-  tf_check_angle ("west of it", tf_observer_carrington (time, -120.0, earth.distance_m), earth.carrington_lon_deg - 120.0, 1e-9);
+  tf_check_near ("at the Earth", tf_observer_carrington (time, 0.0, earth.distance_m),
+                 earth.carrington_lon_deg, 1e-12);
+  tf_check_angle ("west of it", tf_observer_carrington (time, -120.0, earth.distance_m),
+                  earth.carrington_lon_deg - 120.0, 1e-9);
   double saved = 0.8 * TF_AU_M / TF_LIGHT_M_S / TF_DAY_S;
   tf_check_angle ("nearer", tf_observer_carrington (time, 0.0, earth.distance_m - 0.8 * TF_AU_M),
                   earth.carrington_lon_deg - 14.1844 * saved, 1e-9);
@@ -190,7 +200,8 @@ test_laws_table (void)
       g_assert_cmpstr (tf_rotation_laws[n].name, ==, tf_rotation_names[n]);
       g_assert_nonnull (tf_rotation_laws[n].source);
       /* common practice, no source: about 25 days at the equator, about 30 towards the pole */
-      tf_check_between ("days a turn at the equator", 360.0 / tf_rotation_rate (n, 0.0), 24.3, 26.5);
+      tf_check_between ("days a turn at the equator", 360.0 / tf_rotation_rate (n, 0.0), 24.3,
+                        26.5);
       if (n != law ("rigid-carrington"))
         tf_check_between ("days a turn at 60 deg", 360.0 / tf_rotation_rate (n, 60.0), 28.0, 33.0);
     }
@@ -209,15 +220,19 @@ test_law_rates (void)
   for (guint k = 0; k < G_N_ELEMENTS (lats); k++)
     for (int south = -1; south < 2; south += 2)
       {
-        tf_check_near ("Snodgrass & Ulrich", tf_rotation_rate (0, south * lats[k]), magnetic[k], 6e-4);
-        tf_check_near ("Howard, Harvey & Forgach", tf_rotation_rate (law ("howard-harvey-forgach-1990"), south * lats[k]),
+        tf_check_near ("Snodgrass & Ulrich", tf_rotation_rate (0, south * lats[k]), magnetic[k],
+                       6e-4);
+        tf_check_near ("Howard, Harvey & Forgach",
+                       tf_rotation_rate (law ("howard-harvey-forgach-1990"), south * lats[k]),
                        hhf[k], 6e-4);
         tf_check_near ("Howard, Gilman & Gilman",
-                       tf_rotation_rate (law ("howard-gilman-gilman-1984-groups"), south * lats[k]), groups[k], 6e-4);
+                       tf_rotation_rate (law ("howard-gilman-gilman-1984-groups"), south * lats[k]),
+                       groups[k], 6e-4);
       }
-  tf_check_near ("carried in Carrington longitude in 10 days", tf_rotation_carry (0, 20.0, 10.0 * TF_DAY_S),
-                 140.23 - 141.844, 0.01);
-  tf_check_near ("a point of the rigid law stays", tf_rotation_carry (law ("rigid-carrington"), 33.0, 1e7), 0.0, 1e-9);
+  tf_check_near ("carried in Carrington longitude in 10 days",
+                 tf_rotation_carry (0, 20.0, 10.0 * TF_DAY_S), 140.23 - 141.844, 0.01);
+  tf_check_near ("a point of the rigid law stays",
+                 tf_rotation_carry (law ("rigid-carrington"), 33.0, 1e7), 0.0, 1e-9);
 }
 
 void
@@ -228,7 +243,8 @@ add_observer_tests (void)
   g_test_add_func ("/sun/observer/agrees-with-meeus-example-29a", test_meeus);
   g_test_add_func ("/sun/observer/rotations-start-when-the-almanac-says", test_rotation_starts);
   g_test_add_func ("/sun/observer/rotation-number-runs-on-evenly", test_rotation_runs_on);
-  g_test_add_func ("/sun/observer/other-observers-see-the-sun-at-their-own-light-time", test_other_observers);
+  g_test_add_func ("/sun/observer/other-observers-see-the-sun-at-their-own-light-time",
+                   test_other_observers);
   g_test_add_func ("/sun/observer/unknown-time-gives-no-number", test_unknown_time);
   g_test_add_func ("/sun/observer/angles-wrap-at-the-right-end", test_wraps);
   g_test_add_func ("/sun/observer/vantages-are-named-by-side-and-degree", test_vantage);

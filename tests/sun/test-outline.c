@@ -64,17 +64,22 @@ winds (const TfVertex *ring, guint n, double lon, double lat)
 static void
 test_cap (void)
 {
-  const double centres[][2] = { { 100.0, 10.0 }, { 0.3, -5.0 }, { 359.9, 40.0 }, { 20.0, 88.0 }, { 20.0, -90.0 }, { 180.0, 60.0 } };
+  const double centres[][2] = { { 100.0, 10.0 }, { 0.3, -5.0 },   { 359.9, 40.0 },
+                                { 20.0, 88.0 },  { 20.0, -90.0 }, { 180.0, 60.0 } };
   for (guint c = 0; c < G_N_ELEMENTS (centres); c++)
     for (double radius = 2.0; radius < 80.0; radius *= 3.0)
       {
         double lon, lat, r;
-        g_autoptr (TfOutline) cap = tf_outline_new_cap (noon (), centres[c][0], centres[c][1], radius, 720);
+        g_autoptr (TfOutline) cap
+            = tf_outline_new_cap (noon (), centres[c][0], centres[c][1], radius, 720);
         tf_outline_get_cap (cap, &lon, &lat, &r);
-        tf_check_near ("centre", tf_sphere_distance (lon, lat, centres[c][0], centres[c][1]), 0.0, 1e-6);
+        tf_check_near ("centre", tf_sphere_distance (lon, lat, centres[c][0], centres[c][1]), 0.0,
+                       1e-6);
         tf_check_near ("radius", r, radius, 1e-6);
         /* 720 corners: the polygon falls short of the circle by less than 5e-5 of it. */
-        tf_check_near ("area", tf_outline_area (cap, 1.0) / (2.0 * TF_PI * (1.0 - cos (radius * TF_DEG))), 1.0, 1e-4);
+        tf_check_near ("area",
+                       tf_outline_area (cap, 1.0) / (2.0 * TF_PI * (1.0 - cos (radius * TF_DEG))),
+                       1.0, 1e-4);
         for (double along = -180.0; along < 540.0; along += 7.3)
           for (double across = -90.0; across <= 90.0; across += 3.7)
             {
@@ -114,7 +119,8 @@ test_stars (void)
       for (int point = 0; point < 300; point++)
         {
           double lat = CLAMP (lat0 + g_rand_double_range (rand, -14.0, 14.0), -90.0, 90.0);
-          double lon = lon0 + g_rand_double_range (rand, -14.0, 14.0) / MAX (cos (lat * TF_DEG), 0.05);
+          double lon
+              = lon0 + g_rand_double_range (rand, -14.0, 14.0) / MAX (cos (lat * TF_DEG), 0.05);
           g_assert_cmpint (contains (outline, lon, lat), ==, winds (ring, n, lon, lat));
         }
     }
@@ -160,9 +166,11 @@ test_holes_and_left_out (void)
   guint in = 0, total = 0;
   for (int i = 0; i < 600; i++)
     for (int k = 0; k < 600; k++, total++)
-      in += contains (all, -6.0 + 12.0 * (i + 0.5) / 600.0, asin (sin (6.0 * TF_DEG) * (-1.0 + 2.0 * (k + 0.5) / 600.0)) / TF_DEG);
+      in += contains (all, -6.0 + 12.0 * (i + 0.5) / 600.0,
+                      asin (sin (6.0 * TF_DEG) * (-1.0 + 2.0 * (k + 0.5) / 600.0)) / TF_DEG);
   double window = 12.0 * TF_DEG * 2.0 * sin (6.0 * TF_DEG);
-  tf_check_near ("area with hole, island and left-out area", tf_outline_area (all, 1.0) / (window * in / total), 1.0, 0.002);
+  tf_check_near ("area with hole, island and left-out area",
+                 tf_outline_area (all, 1.0) / (window * in / total), 1.0, 0.002);
 }
 
 static void
@@ -171,18 +179,21 @@ test_areas (void)
   /* The octant: an eighth of the sphere, too large for one plane about a corner but not about its middle. */
   const TfVertex octant[] = { { 0.0, 0.0 }, { 90.0, 0.0 }, { 0.0, 90.0 } };
   g_autoptr (TfOutline) eighth = tf_outline_new (noon (), octant, 3, NULL);
-  tf_check_near ("an octant", tf_outline_area (eighth, 695.7), 4.0 * TF_PI * 695.7 * 695.7 / 8.0, 1e-3);
+  tf_check_near ("an octant", tf_outline_area (eighth, 695.7), 4.0 * TF_PI * 695.7 * 695.7 / 8.0,
+                 1e-3);
   /* A bow tie: even-odd counts both wings once, whichever way they turn. */
   const TfVertex tie[] = { { 0.0, -5.0 }, { 10.0, 5.0 }, { 10.0, -5.0 }, { 0.0, 5.0 } };
   const TfVertex wing[] = { { 0.0, -5.0 }, { 5.0, 0.0 }, { 0.0, 5.0 } };
   g_autoptr (TfOutline) bow = tf_outline_new (noon (), tie, 4, NULL);
   g_autoptr (TfOutline) half = tf_outline_new (noon (), wing, 3, NULL);
-  tf_check_near ("a bow tie", tf_outline_area (bow, 1.0) / (2.0 * tf_outline_area (half, 1.0)), 1.0, 1e-9);
+  tf_check_near ("a bow tie", tf_outline_area (bow, 1.0) / (2.0 * tf_outline_area (half, 1.0)), 1.0,
+                 1e-9);
   /* A left-out area that reaches over the edge takes away only what is inside. */
   const TfVertex east[] = { { 5.0, -20.0 }, { 30.0, -20.0 }, { 30.0, 20.0 }, { 5.0, 20.0 } };
   g_autoptr (TfOutline) whole = box (0.0, 10.0, -5.0, 5.0);
   g_autoptr (TfOutline) cut = tf_outline_with_ring (whole, east, 4, TRUE, NULL);
-  tf_check_near ("half left out", tf_outline_area (cut, 1.0) / tf_outline_area (whole, 1.0), 0.5, 1e-9);
+  tf_check_near ("half left out", tf_outline_area (cut, 1.0) / tf_outline_area (whole, 1.0), 0.5,
+                 1e-9);
 }
 
 /* -- edits ----------------------------------------------------------------------------------- */
@@ -249,11 +260,14 @@ test_split (void)
   g_autoptr (TfOutline) left = tf_outline_with_ring (holed, out, 4, TRUE, NULL);
   g_autoptr (TfOutline) whole = tf_outline_with_pin (left, &pin);
   TfOutline *one = NULL, *other = NULL;
-  g_assert_true (tf_outline_split (whole, (TfVertex){ 0.0, -15.0 }, (TfVertex){ 0.0, 15.0 }, &one, &other, &error));
+  g_assert_true (tf_outline_split (whole, (TfVertex){ 0.0, -15.0 }, (TfVertex){ 0.0, 15.0 }, &one,
+                                   &other, &error));
   g_assert_no_error (error);
-  double area = tf_outline_area (whole, 1.0), a = tf_outline_area (one, 1.0), b = tf_outline_area (other, 1.0);
+  double area = tf_outline_area (whole, 1.0), a = tf_outline_area (one, 1.0),
+         b = tf_outline_area (other, 1.0);
   tf_check_near ("the two are the whole", (a + b) / area, 1.0, 1e-9);
-  tf_check_near ("one differs from the other by the hole", b - a, tf_outline_area (holed, 1.0) * -1.0 + tf_outline_area (plain, 1.0), 1e-9);
+  tf_check_near ("one differs from the other by the hole", b - a,
+                 tf_outline_area (holed, 1.0) * -1.0 + tf_outline_area (plain, 1.0), 1e-9);
   /* The first is to the left of the line, east when it runs north. */
   g_assert_true (contains (one, 355.0, 0.0));
   g_assert_false (contains (one, 5.0, 0.0));
@@ -268,7 +282,8 @@ test_split (void)
   g_assert_cmpuint (tf_outline_get_n_pins (other), ==, 1);
   tf_outline_unref (one);
   tf_outline_unref (other);
-  g_assert_false (tf_outline_split (whole, (TfVertex){ 0.0, 0.0 }, (TfVertex){ 0.0, 15.0 }, &one, &other, &error));
+  g_assert_false (tf_outline_split (whole, (TfVertex){ 0.0, 0.0 }, (TfVertex){ 0.0, 15.0 }, &one,
+                                    &other, &error));
   g_assert_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE);
   g_assert_null (one);
   g_assert_null (other);
@@ -292,8 +307,10 @@ test_split_sides (void)
       g_assert_true (cos (turn) * (lat - 10.0) - sin (turn) * (lon - 200.0) > 1.0);
       for (int point = 0; point < 100; point++)
         {
-          double x = g_rand_double_range (rand, 185.0, 215.0), y = g_rand_double_range (rand, -5.0, 25.0);
-          g_assert_cmpint (contains (halves[0], x, y) + contains (halves[1], x, y), ==, contains (cap, x, y));
+          double x = g_rand_double_range (rand, 185.0, 215.0),
+                 y = g_rand_double_range (rand, -5.0, 25.0);
+          g_assert_cmpint (contains (halves[0], x, y) + contains (halves[1], x, y), ==,
+                           contains (cap, x, y));
         }
       tf_outline_unref (halves[0]);
       tf_outline_unref (halves[1]);
@@ -303,27 +320,32 @@ test_split_sides (void)
 static void
 test_deform (void)
 {
-  const double none[3] = { 0.0, 0.0, 0.0 }, phases[3] = { 0.3, 1.0, 2.0 }, third[3] = { 0.0, 0.0, 1.5 };
+  const double none[3] = { 0.0, 0.0, 0.0 }, phases[3] = { 0.3, 1.0, 2.0 },
+               third[3] = { 0.0, 0.0, 1.5 };
   const double centres[][2] = { { 10.0, 20.0 }, { 359.9, -35.0 }, { 77.0, 89.0 } };
   for (guint c = 0; c < G_N_ELEMENTS (centres); c++)
     {
-      g_autoptr (TfOutline) cap = tf_outline_new_cap (noon (), centres[c][0], centres[c][1], 6.0, 0);
+      g_autoptr (TfOutline) cap
+          = tf_outline_new_cap (noon (), centres[c][0], centres[c][1], 6.0, 0);
       g_autoptr (TfOutline) same = tf_outline_deform (cap, 0.0, 0.0, 1.0, none, phases);
       g_autoptr (TfOutline) moved = tf_outline_deform (cap, 0.0, 2.0, 1.0, none, phases);
       g_autoptr (TfOutline) larger = tf_outline_deform (cap, 0.0, 0.0, 1.2, none, phases);
       g_autoptr (TfOutline) clover = tf_outline_deform (cap, 0.0, 0.0, 1.0, third, phases);
       double lon, lat, r;
       guint n;
-      tf_check_near ("area of the same", tf_outline_area (same, 1.0) / tf_outline_area (cap, 1.0), 1.0, 1e-9);
+      tf_check_near ("area of the same", tf_outline_area (same, 1.0) / tf_outline_area (cap, 1.0),
+                     1.0, 1e-9);
       tf_outline_get_cap (moved, &lon, &lat, &r);
-      tf_check_near ("moved by 2 deg", tf_sphere_distance (lon, lat, centres[c][0], centres[c][1]), 2.0, 2e-2);
+      tf_check_near ("moved by 2 deg", tf_sphere_distance (lon, lat, centres[c][0], centres[c][1]),
+                     2.0, 2e-2);
       tf_outline_get_cap (larger, &lon, &lat, &r);
       tf_check_near ("larger by a fifth", r, 7.2, 1e-6);
       const TfVertex *ring = tf_outline_get_ring (clover, 0, FALSE, &n);
       double least = 99.0, most = 0.0;
       for (guint k = 0; k < n; k++)
         {
-          double d = tf_sphere_distance (ring[k].lon_deg, ring[k].lat_deg, centres[c][0], centres[c][1]);
+          double d
+              = tf_sphere_distance (ring[k].lon_deg, ring[k].lat_deg, centres[c][0], centres[c][1]);
           least = MIN (least, d);
           most = MAX (most, d);
         }
@@ -372,10 +394,12 @@ test_carry (void)
     {
       const TfVertex *old = tf_outline_get_ring (outline, 0, FALSE, &n);
       tf_check_angle ("a vertex carried for 5 days", ring[k].lon_deg,
-                      old[k].lon_deg + 5.0 * (tf_rotation_rate (0, old[k].lat_deg) - 14.1844), 1e-9);
+                      old[k].lon_deg + 5.0 * (tf_rotation_rate (0, old[k].lat_deg) - 14.1844),
+                      1e-9);
       tf_check_near ("its latitude", ring[k].lat_deg, old[k].lat_deg, 0.0);
     }
-  tf_check_angle ("the pin too", tf_outline_get_pin (moved, 0)->lon_deg, 359.0 + 5.0 * (tf_rotation_rate (0, 30.0) - 14.1844), 1e-9);
+  tf_check_angle ("the pin too", tf_outline_get_pin (moved, 0)->lon_deg,
+                  359.0 + 5.0 * (tf_rotation_rate (0, 30.0) - 14.1844), 1e-9);
   tf_check_near ("time", tf_outline_get_time (moved).s, later.s, 0.0);
   const TfVertex *again = tf_outline_get_ring (back, 0, FALSE, &n);
   tf_check_angle ("and back", again[2].lon_deg, 365.0, 1e-9);
@@ -421,9 +445,11 @@ check_json (const TfOutline *outline)
 static void
 test_json (void)
 {
-  const TfPinnedPole plus = { 1, 355.123456789, 1.0, "he said \"here\"", "Ann" }, minus = { -1, 3.0, 1.0, NULL, NULL };
+  const TfPinnedPole plus = { 1, 355.123456789, 1.0, "he said \"here\"", "Ann" },
+                     minus = { -1, 3.0, 1.0, NULL, NULL };
   const TfVertex out[] = { { 359.0, 0.1 }, { 1.0, 0.2 }, { 0.0, 1.0 / 3.0 } };
-  g_autoptr (TfOutline) plain = tf_outline_new_cap (tf_time_read ("2013-10-12T06:00:00.123456Z"), 359.0, 12.0, 5.0, 0);
+  g_autoptr (TfOutline) plain
+      = tf_outline_new_cap (tf_time_read ("2013-10-12T06:00:00.123456Z"), 359.0, 12.0, 5.0, 0);
   g_autoptr (TfOutline) left = tf_outline_with_ring (plain, out, 3, TRUE, NULL);
   g_autoptr (TfOutline) one = tf_outline_with_pin (left, &plus);
   g_autoptr (TfOutline) two = tf_outline_with_pin (one, &minus);
@@ -439,7 +465,8 @@ test_json (void)
   g_autoptr (TfOutline) small = tf_outline_new (noon (), square, 3, NULL);
   g_autofree char *text = tf_outline_dup_text (small);
   g_assert_cmpstr (text, ==,
-                   "{\"frame\":\"carrington\",\"time\":\"2013-10-12T12:00:00Z\",\"rings\":[[[10,1],[11.5,1],[11,2]]],"
+                   "{\"frame\":\"carrington\",\"time\":\"2013-10-12T12:00:00Z\",\"rings\":[[[10,1],"
+                   "[11.5,1],[11,2]]],"
                    "\"left_out\":[],\"pinned\":null}");
 }
 
@@ -468,13 +495,20 @@ test_bad_json (void)
     { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,91]]]}", TF_OUTLINE_ERROR_SHAPE },
     { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1e300,1]]]}", TF_OUTLINE_ERROR_SHAPE },
     { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[120,0],[240,0]]]}", TF_OUTLINE_ERROR_SHAPE },
-    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"left_out\":\"x\"}", TF_OUTLINE_ERROR_FORM },
-    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"left_out\":[[1]]}", TF_OUTLINE_ERROR_FORM },
-    { "{\"frame\":\"carrington\",\"time\":\"soon\",\"rings\":[[[0,0],[1,0],[1,1]]]}", TF_OUTLINE_ERROR_FORM },
-    { "{\"frame\":\"carrington\",\"time\":7,\"rings\":[[[0,0],[1,0],[1,1]]]}", TF_OUTLINE_ERROR_FORM },
-    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"pinned\":3}", TF_OUTLINE_ERROR_FORM },
-    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"pinned\":{}}", TF_OUTLINE_ERROR_FORM },
-    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"pinned\":{\"polarity\":2,\"lon\":1,\"lat\":1}}",
+    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"left_out\":\"x\"}",
+      TF_OUTLINE_ERROR_FORM },
+    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"left_out\":[[1]]}",
+      TF_OUTLINE_ERROR_FORM },
+    { "{\"frame\":\"carrington\",\"time\":\"soon\",\"rings\":[[[0,0],[1,0],[1,1]]]}",
+      TF_OUTLINE_ERROR_FORM },
+    { "{\"frame\":\"carrington\",\"time\":7,\"rings\":[[[0,0],[1,0],[1,1]]]}",
+      TF_OUTLINE_ERROR_FORM },
+    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"pinned\":3}",
+      TF_OUTLINE_ERROR_FORM },
+    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"pinned\":{}}",
+      TF_OUTLINE_ERROR_FORM },
+    { "{\"frame\":\"carrington\",\"rings\":[[[0,0],[1,0],[1,1]]],\"pinned\":{\"polarity\":2,"
+      "\"lon\":1,\"lat\":1}}",
       TF_OUTLINE_ERROR_FORM },
   };
   for (guint k = 0; k < G_N_ELEMENTS (rows); k++)

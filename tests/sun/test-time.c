@@ -112,7 +112,8 @@ test_years (void)
   TfTime start = tf_time_from_calendar (2013, 1, 1, 0, 0, 0.0, TF_SCALE_UTC);
   tf_check_near ("a year begins on January 1", tf_time_from_year (2013.0).s, start.s, 1e-5);
   TfTime middle = tf_time_from_calendar (2013, 7, 2, 12, 0, 0.0, TF_SCALE_UTC);
-  tf_check_near ("half a common year is July 2, 12 h", tf_time_from_year (2013.5).s, middle.s, 1e-4);
+  tf_check_near ("half a common year is July 2, 12 h", tf_time_from_year (2013.5).s, middle.s,
+                 1e-4);
   for (double year = 1749.123; year < 2100.0; year += 7.77)
     tf_check_near ("decimal year and back", tf_time_year (tf_time_from_year (year)), year, 1e-9);
   g_assert_false (tf_time_is_known (tf_time_from_year (NAN)));
@@ -138,7 +139,8 @@ test_unknown (void)
   g_assert_false (tf_time_is_known (tf_time_from_calendar (2013, 2, 30, 0, 0, 0.0, TF_SCALE_UTC)));
   g_assert_false (tf_time_is_known (tf_time_from_calendar (2013, 2, 3, 0, 0, NAN, TF_SCALE_UTC)));
   g_assert_false (tf_time_is_known (tf_time_from_calendar (2013, 2, 3, 0, 0, NAN, TF_SCALE_TAI)));
-  g_assert_false (tf_time_is_known (tf_time_from_calendar (G_MAXINT, 1, 1, 0, 0, 0.0, TF_SCALE_UTC)));
+  g_assert_false (
+      tf_time_is_known (tf_time_from_calendar (G_MAXINT, 1, 1, 0, 0, 0.0, TF_SCALE_UTC)));
   g_assert_false (tf_time_is_known (tf_time_from_jd (INFINITY, 0.0, TF_SCALE_UTC)));
   g_assert_false (tf_time_calendar (unknown, NULL, NULL, NULL, NULL, NULL, NULL));
   g_assert_null (tf_time_dup_iso (unknown, 0));
