@@ -127,8 +127,8 @@ disk_row (const TfGeometry *g, double y, double x0)
   return row;
 }
 
-/* Planes of one chunk; @x, @y, @z: the unit vector. Off the disk the root of a negative number makes
- * everything NaN. */
+/* Planes of one chunk; @x, @y, @z: the unit vector. Off the disk the root of a negative number
+ * makes everything NaN. */
 typedef struct
 {
   double x[CHUNK], y[CHUNK], z[CHUNK], mu[CHUNK], area[CHUNK];

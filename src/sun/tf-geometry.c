@@ -248,7 +248,8 @@ map_area (const TfGeometry *g, double y)
 /* -- one point ------------------------------------------------------------------------------- */
 
 /* Where the line of sight @w (not normalised) meets the photosphere: mu, and @t so that t w is the
- * point as seen from the observer, Mm. D sin rho = R sin (arccos mu), so mu needs no trigonometry. */
+ * point as seen from the observer, Mm. D sin rho = R sin (arccos mu), so mu needs no trigonometry.
+ */
 static gboolean
 meet (const TfGeometry *g, const double w[3], double *mu, double *t)
 {

@@ -49,8 +49,9 @@ sun_axes (void)
   return axes;
 }
 
-/* Heliocentric and barycentric place and velocity of the Earth, au and au/day. ERFA's warning that a
- * date lies outside 1900-2100 is let pass: its error there stays far below what a frame can show. */
+/* Heliocentric and barycentric place and velocity of the Earth, au and au/day. ERFA's warning that
+ * a date lies outside 1900-2100 is let pass: its error there stays far below what a frame can show.
+ */
 static gboolean
 earth_place (TfTime time, double heliocentric[2][3], double barycentric[2][3])
 {
@@ -108,8 +109,8 @@ tf_observer_carrington (TfTime time, double stonyhurst_lon_deg, double distance_
                       + TF_W1_DEG_DAY * later / TF_DAY_S);
 }
 
-/* The Sun's apparent direction (the geometric one moved by the Earth's velocity over that of light),
- * and at right angles to it the directions of celestial north of date and of east. */
+/* The Sun's apparent direction (the geometric one moved by the Earth's velocity over that of
+ * light), and at right angles to it the directions of celestial north of date and of east. */
 double
 tf_earth_p (TfTime time)
 {

@@ -36,7 +36,8 @@ typedef struct
 /** TfL0Kind: which small corrections L0 carries (they differ by 0.0054 deg). */
 typedef enum
 {
-  TF_L0_IMAGE,   /* light time from the nearest point of the surface, no aberration: aligns pictures; default */
+  TF_L0_IMAGE, /* light time from the nearest point of the surface, no aberration: aligns pictures;
+                  default */
   TF_L0_ALMANAC, /* light time from the centre and aberration, as the Astronomical Almanac prints */
 } TfL0Kind;
 
@@ -45,23 +46,28 @@ typedef enum
 TfObserver tf_observer_earth (TfTime time);
 /**
  * tf_observer_carrington: Carrington longitude of an observer whose Stonyhurst longitude is known.
- * @distance_m: from the Sun's centre, m: light from a nearer Sun shows it a little later (0.08 deg between 0.2 au and 1 au)
+ * @distance_m: from the Sun's centre, m: the light of a nearer Sun is younger (0.08 deg from 1 au to
+ *   0.2 au)
  * Returns: deg in [0, 360), with the corrections of TF_L0_IMAGE; NaN when a number is not known.
  */
 double tf_observer_carrington (TfTime time, double stonyhurst_lon_deg, double distance_m);
-/** tf_earth_l0: Carrington longitude of the central meridian seen from the Earth, deg in [0, 360). */
+/** tf_earth_l0: Carrington longitude of the Earth's central meridian, deg in [0, 360). */
 double tf_earth_l0 (TfTime time, TfL0Kind kind);
-/** tf_earth_p: position angle of the Sun's north pole from celestial north of date, east positive, deg. */
+/** tf_earth_p: position angle of the Sun's north pole from celestial north of date, east positive,
+ * deg. */
 double tf_earth_p (TfTime time);
-/** tf_carrington_rotation: rotation number and its elapsed part (2132.0 = the start of 2132), by the Earth's L0. */
+/** tf_carrington_rotation: rotation number and its elapsed part (2132.0 = the start of 2132), by
+ * the Earth's L0. */
 double tf_carrington_rotation (TfTime time);
-/** tf_carrington_time: when the Earth's central meridian had that rotation number: inverse of the above, to 1 s. */
+/** tf_carrington_time: when the Earth's central meridian had that rotation number: inverse of the
+ * above, to 1 s. */
 TfTime tf_carrington_time (double rotation);
-/** tf_observer_meeus: Meeus, Astronomical Algorithms 2nd ed., ch. 29; a cross-check only, never used for results. */
+/** tf_observer_meeus: Meeus, Astronomical Algorithms 2nd ed., ch. 29; a cross-check only, never
+ * used for results. */
 void tf_observer_meeus (TfTime time, double *p_deg, double *b0_deg, double *l0_deg);
 const char *tf_observer_source_name (TfObserverSource source);
-/** tf_observer_dup_vantage: "earth" within 7.5 deg of Stonyhurst longitude 0, else "E022" or "W140" from
- * the longitude rounded to a degree; "unknown" when there is none. */
+/** tf_observer_dup_vantage: "earth" within 7.5 deg of Stonyhurst longitude 0, else "E022" or "W140"
+ * from the longitude rounded to a degree; "unknown" when there is none. */
 char *tf_observer_dup_vantage (const TfObserver *observer);
 
 /** tf_wrap_180: deg to (-180, 180]; tf_wrap_360: deg to [0, 360). NaN stays. */

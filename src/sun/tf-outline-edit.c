@@ -41,8 +41,8 @@ typedef struct
   const double *amplitude_deg, *phase;
 } Deform;
 
-/* The tangent plane here is the equidistant one: a vertex lies at its great-circle distance from the
- * centre, in its direction. */
+/* The tangent plane here is the equidistant one: a vertex lies at its great-circle distance from
+ * the centre, in its direction. */
 static TfVertex
 deform_vertex (TfVertex vertex, const void *data)
 {

@@ -199,7 +199,8 @@ tf_outline_contains_rings (const TfOutline *outline, const double unit[3])
 
 /* -- finishing ------------------------------------------------------------------------------- */
 
-/* Mean direction of the edges, each weighted by its length, so that crowded vertices pull no more. */
+/* Mean direction of the edges, each weighted by its length, so that crowded vertices pull no more.
+ */
 static void
 add_edges (const TfRing *ring, double sum[3])
 {

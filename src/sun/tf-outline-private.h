@@ -5,10 +5,10 @@
 
 /* The inside of TfOutline, for the tf-outline-*.c files only.
  *
- * All rings lie within 89 deg of one centre. There they are also kept in the gnomonic plane about it,
- * u towards west and v towards north: great circles are straight lines in that plane, so even-odd
- * on its straight edges is exact on the sphere. The edges of a ring are sorted into slabs of v, so that a
- * point is tested against the few edges at its height.
+ * All rings lie within 89 deg of one centre. There they are also kept in the gnomonic plane about
+ * it, u towards west and v towards north: great circles are straight lines in that plane, so
+ * even-odd on its straight edges is exact on the sphere. The edges of a ring are sorted into slabs
+ * of v, so that a point is tested against the few edges at its height.
  */
 
 #include "tf-outline.h"
@@ -45,16 +45,18 @@ struct _TfOutline
 
 /** tf_outline_start: an outline without rings, to be filled and then finished. */
 TfOutline *tf_outline_start (TfTime time);
-/** tf_outline_fill: copies the vertices in; fewer than 3, a number that is not finite, or a latitude beyond the poles is an
- * error that names the ring by @name. */
-gboolean tf_outline_fill (TfOutline *outline, const TfVertex *vertices, guint n, gboolean left_out, const char *name,
-                          GError **error);
+/** tf_outline_fill: copies the vertices in; fewer than 3, a number that is not finite, or a
+ * latitude beyond the poles is an error that names the ring by @name. */
+gboolean tf_outline_fill (TfOutline *outline, const TfVertex *vertices, guint n, gboolean left_out,
+                          const char *name, GError **error);
 void tf_outline_fill_pin (TfOutline *outline, const TfPinnedPole *pin);
 void tf_outline_fill_pins_of (TfOutline *outline, const TfOutline *from);
-/** tf_outline_finish: projects and sorts. @outline is taken; NULL when it has no ring or is larger than a hemisphere. */
+/** tf_outline_finish: projects and sorts. @outline is taken; NULL when it has no ring or is larger
+ * than a hemisphere. */
 TfOutline *tf_outline_finish (TfOutline *outline, GError **error);
 
-/** tf_outline_project: makes the plane, the slabs and the cap; FALSE when a vertex lies 89 deg or more from the centre. */
+/** tf_outline_project: makes the plane, the slabs and the cap; FALSE when a vertex lies 89 deg or
+ * more from the centre. */
 gboolean tf_outline_project (TfOutline *outline);
 
 TfTangent tf_tangent_at (const double centre[3]);

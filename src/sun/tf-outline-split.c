@@ -8,8 +8,9 @@
 
 #include "tf-constants.h"
 
-/* Splitting works in the gnomonic plane, where the line is straight. The first ring is cut in two; every
- * other ring that meets the line is cut by it too, the rest go with the half that they lie in.
+/* Splitting works in the gnomonic plane, where the line is straight. The first ring is cut in two;
+ * every other ring that meets the line is cut by it too, the rest go with the half that they lie
+ * in.
  */
 
 typedef struct
@@ -105,8 +106,8 @@ signed_area (const GArray *part)
   return sum / 2.0;
 }
 
-/* A part's last edge runs along the cut; its inside is to the left of that edge when the part turns to
- * the left. */
+/* A part's last edge runs along the cut; its inside is to the left of that edge when the part turns
+ * to the left. */
 static gboolean
 is_left (const Cut *cut, const GArray *part)
 {
@@ -127,8 +128,8 @@ fill_part (TfOutline *outline, const GArray *part, gboolean left_out)
   return tf_outline_fill (outline, vertices, part->len, left_out, _ ("ring"), NULL);
 }
 
-/* The part of a ring on one side of the endless line: Sutherland & Hodgman 1974, CACM 17, 32. Edges along the
- * line that are run through twice cancel in even-odd. */
+/* The part of a ring on one side of the endless line: Sutherland & Hodgman 1974, CACM 17, 32. Edges
+ * along the line that are run through twice cancel in even-odd. */
 static GArray *
 clip (const TfTangent *tangent, const Cut *cut, const TfRing *ring, gboolean left)
 {

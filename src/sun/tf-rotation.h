@@ -20,14 +20,16 @@ typedef struct
   const char *source; /* paper; "from memory" where nobody read it */
 } TfRotationLaw;
 
-/** tf_rotation_laws: ends with name NULL; index 0 is the default, Snodgrass & Ulrich 1990 magnetic. */
+/** tf_rotation_laws: ends with name NULL; index 0 is the default, Snodgrass & Ulrich 1990 magnetic.
+ */
 extern const TfRotationLaw tf_rotation_laws[];
 /** tf_rotation_names: the names, NULL-ended, for an option table. */
 extern const char *const tf_rotation_names[];
 
 /** tf_rotation_rate: sidereal, deg/day, at latitude deg. */
 double tf_rotation_rate (guint law, double lat_deg);
-/** tf_rotation_carry: how far a point moves in Carrington longitude in @seconds, deg, west positive. */
+/** tf_rotation_carry: how far a point moves in Carrington longitude in @seconds, deg, west
+ * positive. */
 double tf_rotation_carry (guint law, double lat_deg, double seconds);
 
 G_END_DECLS

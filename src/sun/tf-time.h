@@ -30,15 +30,17 @@ typedef enum
 #define TF_TIME_UNKNOWN ((TfTime){ __builtin_nan ("") })
 
 gboolean tf_time_is_known (TfTime time);
-/** tf_time_from_calendar: Gregorian date in @scale; @second may be 60.x in a leap second and may run
- * past its range by arithmetic; unknown when the date does not exist. */
-TfTime tf_time_from_calendar (int year, int month, int day, int hour, int minute, double second, TfTimeScale scale);
+/** tf_time_from_calendar: Gregorian date in @scale; @second may be 60.x in a leap second and may
+ * run past its range by arithmetic; unknown when the date does not exist. */
+TfTime tf_time_from_calendar (int year, int month, int day, int hour, int minute, double second,
+                              TfTimeScale scale);
 /** tf_time_from_jd: Julian date in two parts in @scale. */
 TfTime tf_time_from_jd (double jd1, double jd2, TfTimeScale scale);
-/** tf_time_from_year: decimal year, 2000.0 = 2000 January 1 0 h UTC, within the year linear in days. */
+/** tf_time_from_year: decimal year, 2000.0 = 2000 January 1 0 h UTC, within the year linear in
+ * days. */
 TfTime tf_time_from_year (double year);
-/** tf_time_read: ISO 8601 text, "2013-10-12T06:00:00.5Z", the Z, fraction, seconds or the whole time optional;
- * read as UTC. unknown when it is not that. */
+/** tf_time_read: ISO 8601 text, "2013-10-12T06:00:00.5Z", the Z, fraction, seconds or the whole
+ * time optional; read as UTC. unknown when it is not that. */
 TfTime tf_time_read (const char *text);
 
 TfTime tf_time_add (TfTime time, double seconds);
@@ -49,8 +51,10 @@ double tf_time_jd (TfTime time, TfTimeScale scale);
 /** tf_time_year: decimal year of UTC, the inverse of tf_time_from_year. */
 double tf_time_year (TfTime time);
 /** tf_time_calendar: UTC; FALSE when unknown. Any out pointer may be NULL. */
-gboolean tf_time_calendar (TfTime time, int *year, int *month, int *day, int *hour, int *minute, double *second);
-/** tf_time_dup_iso: "2013-10-12T06:00:00Z" in UTC with @decimals of the second (0-6); NULL when unknown. */
+gboolean tf_time_calendar (TfTime time, int *year, int *month, int *day, int *hour, int *minute,
+                           double *second);
+/** tf_time_dup_iso: "2013-10-12T06:00:00Z" in UTC with @decimals of the second (0-6); NULL when
+ * unknown. */
 char *tf_time_dup_iso (TfTime time, int decimals);
 
 G_END_DECLS

@@ -53,8 +53,8 @@ random_observer (GRand *rand, Header *h)
   h->observer.source = TF_OBSERVER_HEADER;
 }
 
-/* Plain scales with CROTA2 for one third, PC for the rest; one third with CRVAL away from the Sun's centre, a
- * sixth with a LONPOLE too; disks in the middle, off it, and cut-outs far from CRPIX. */
+/* Plain scales with CROTA2 for one third, PC for the rest; one third with CRVAL away from the Sun's
+ * centre, a sixth with a LONPOLE too; disks in the middle, off it, and cut-outs far from CRPIX. */
 static Header
 random_header (GRand *rand, int k)
 {

@@ -13,7 +13,8 @@ observer (double au, double b0, double stonyhurst, double carrington)
   return (TfObserver){ au * TF_AU_M, b0, stonyhurst, carrington, TF_OBSERVER_HEADER };
 }
 
-/* Test vectors worked out with the sunpy library, 4.1.2, for a made-up observer (reference, section 1.1). */
+/* Test vectors worked out with the sunpy library, 4.1.2, for a made-up observer (reference,
+ * section 1.1). */
 static const double places[5][6] = {
   /* theta_x, theta_y, then lon, lat with R = 695.7 Mm, lon, lat with R = 696 Mm */
   { 0.0, 0.0, 0.0, 4.979788, 0.0, 4.979788 },
@@ -51,7 +52,8 @@ test_vectors (void)
       }
 }
 
-/* Reference, section 1.2: exact mu at 1 au, 0.49650 at 60 deg and 0.33790 at 70 deg from the centre. */
+/* Reference, section 1.2: exact mu at 1 au, 0.49650 at 60 deg and 0.33790 at 70 deg from the
+ * centre. */
 static void
 test_mu (void)
 {
@@ -73,7 +75,8 @@ test_mu (void)
       }
 }
 
-/* Reference, section 1.2: 0.5 arcsec pixels at the centre are 0.3609 Mm wide, 1.98 arcsec 1.429 Mm. */
+/* Reference, section 1.2: 0.5 arcsec pixels at the centre are 0.3609 Mm wide, 1.98 arcsec 1.429 Mm.
+ */
 static void
 test_area (void)
 {
@@ -158,7 +161,8 @@ test_limb (void)
   TfGeometry g;
   double cx, cy;
   g_assert_true (tf_geometry_make_disk (&g, 1024, 1024, 500.0, 530.0, 2.0, 15.0, &o, 696.0));
-  /* Reference, section 1.1: asin (696e6 / 147904704539.75 m) = 970.6306 arcsec, as a header has it. */
+  /* Reference, section 1.1: asin (696e6 / 147904704539.75 m) = 970.6306 arcsec, as a header has it.
+   */
   TfObserver header = observer (147904704539.75 / TF_AU_M, 0.0, 0.0, 0.0);
   TfGeometry h;
   g_assert_true (tf_geometry_make_disk (&h, 64, 64, 32.5, 32.5, 30.0, 0.0, &header, 696.0));

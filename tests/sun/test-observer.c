@@ -58,6 +58,17 @@ test_almanac (void)
                  0.0054, 2e-4);
 }
 
+/* Worked out with the sunpy library for two instants, UTC. */
+static void
+test_two_instants (void)
+{
+  TfTime a = tf_time_read ("2010-10-15T19:14:56Z"), b = tf_time_read ("2014-03-01T00:00:50Z");
+  tf_check_near ("L0", tf_earth_l0 (a, TF_L0_IMAGE), 192.8099, 6e-5);
+  tf_check_near ("B0", tf_observer_earth (a).b0_deg, 5.8294, 6e-5);
+  tf_check_near ("L0", tf_earth_l0 (b, TF_L0_IMAGE), 132.4888, 6e-5);
+  tf_check_near ("B0", tf_observer_earth (b).b0_deg, -7.2170, 6e-5);
+}
+
 /* Meeus, Astronomical Algorithms, 2nd ed., example 29.a, 1992 October 13.0 TD. */
 static void
 test_meeus (void)
@@ -73,7 +84,8 @@ test_meeus (void)
   tf_check_near ("L0", tf_earth_l0 (time, TF_L0_IMAGE), 238.63, 0.02);
 }
 
-/* Astronomical Almanac 2013, table C4: starts of rotations, TT, as quoted in the test suite of the sunpy library. */
+/* Astronomical Almanac 2013, table C4: starts of rotations, TT, as quoted in the test suite of the
+ * sunpy library. */
 static void
 test_rotation_starts (void)
 {
@@ -240,6 +252,8 @@ add_observer_tests (void)
 {
   g_test_add_func ("/sun/observer/agrees-with-horizons", test_horizons);
   g_test_add_func ("/sun/observer/agrees-with-the-almanac", test_almanac);
+  g_test_add_func ("/sun/observer/agrees-with-the-two-instants-of-the-reference",
+                   test_two_instants);
   g_test_add_func ("/sun/observer/agrees-with-meeus-example-29a", test_meeus);
   g_test_add_func ("/sun/observer/rotations-start-when-the-almanac-says", test_rotation_starts);
   g_test_add_func ("/sun/observer/rotation-number-runs-on-evenly", test_rotation_runs_on);

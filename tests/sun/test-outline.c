@@ -14,7 +14,8 @@ noon (void)
   return tf_time_read ("2013-10-12T12:00:00Z");
 }
 
-/* A box between two longitudes and latitudes; its sides in latitude are great circles all the same. */
+/* A box between two longitudes and latitudes; its sides in latitude are great circles all the same.
+ */
 static TfOutline *
 box (double west, double east, double south, double north)
 {
@@ -33,8 +34,8 @@ contains (const TfOutline *outline, double lon, double lat)
   return tf_outline_contains (outline, unit);
 }
 
-/* Even-odd by another way than the program's: the angles under which the edges are seen from the point add
- * up to a whole number of turns. Great-circle edges, no projection. */
+/* Even-odd by another way than the program's: the angles under which the edges are seen from the
+ * point add up to a whole number of turns. Great-circle edges, no projection. */
 static gboolean
 winds (const TfVertex *ring, guint n, double lon, double lat)
 {
@@ -176,7 +177,8 @@ test_holes_and_left_out (void)
 static void
 test_areas (void)
 {
-  /* The octant: an eighth of the sphere, too large for one plane about a corner but not about its middle. */
+  /* The octant: an eighth of the sphere, too large for one plane about a corner but not about its
+   * middle. */
   const TfVertex octant[] = { { 0.0, 0.0 }, { 90.0, 0.0 }, { 0.0, 90.0 } };
   g_autoptr (TfOutline) eighth = tf_outline_new (noon (), octant, 3, NULL);
   tf_check_near ("an octant", tf_outline_area (eighth, 695.7), 4.0 * TF_PI * 695.7 * 695.7 / 8.0,
@@ -289,7 +291,8 @@ test_split (void)
   g_assert_null (other);
 }
 
-/* A line drawn backwards or slanting keeps the meaning of left; every point goes to exactly one side. */
+/* A line drawn backwards or slanting keeps the meaning of left; every point goes to exactly one
+ * side. */
 static void
 test_split_sides (void)
 {

@@ -21,7 +21,8 @@ test_leap_seconds (void)
       TfTime utc = tf_time_from_calendar (rows[k].year, rows[k].month, 1, 0, 0, 0.0, TF_SCALE_UTC);
       TfTime tai = tf_time_from_calendar (rows[k].year, rows[k].month, 1, 0, 0, 0.0, TF_SCALE_TAI);
       tf_check_near ("TAI - UTC", utc.s - tai.s, rows[k].tai_minus_utc, 1e-6);
-      /* The second before began one second earlier on a day with a leap second: two labels apart. */
+      /* The second before began one second earlier on a day with a leap second: two labels apart.
+       */
       TfTime before = tf_time_add (utc, -1.0);
       int second = (int)rows[k].tai_minus_utc == 10 ? 0 : 60;
       double got;
