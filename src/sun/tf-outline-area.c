@@ -90,12 +90,7 @@ upto (double u, double v)
 static gboolean
 inside (const TfOutline *outline, double u, double v)
 {
-  gboolean in = FALSE;
-  for (guint k = 0; k < outline->rings->len; k++)
-    in ^= tf_ring_contains (g_ptr_array_index (outline->rings, k), u, v);
-  for (guint k = 0; in && k < outline->left_out->len; k++)
-    in = !tf_ring_contains (g_ptr_array_index (outline->left_out, k), u, v);
-  return in;
+  return tf_outline_inside_rings (outline, u, v) && !tf_outline_inside_left_out (outline, u, v);
 }
 
 static double

@@ -159,8 +159,8 @@ tf_ring_crossings (const TfRing *ring, double v, GArray *u)
       g_array_append_val (u, at);
 }
 
-static gboolean
-inside_rings (const TfOutline *outline, double u, double v)
+gboolean
+tf_outline_inside_rings (const TfOutline *outline, double u, double v)
 {
   gboolean inside = FALSE;
   for (guint k = 0; k < outline->rings->len; k++)
@@ -168,8 +168,8 @@ inside_rings (const TfOutline *outline, double u, double v)
   return inside;
 }
 
-static gboolean
-inside_left_out (const TfOutline *outline, double u, double v)
+gboolean
+tf_outline_inside_left_out (const TfOutline *outline, double u, double v)
 {
   for (guint k = 0; k < outline->left_out->len; k++)
     if (tf_ring_contains (g_ptr_array_index (outline->left_out, k), u, v))
@@ -181,20 +181,24 @@ gboolean
 tf_outline_contains (const TfOutline *outline, const double unit[3])
 {
   double u, v;
-  if (!(dot (unit, outline->cap_unit) >= outline->cap_cos)
-      || !tf_tangent_project (&outline->tangent, unit, &u, &v))
+  if (!tf_tangent_project (&outline->tangent, unit, &u, &v))
     return FALSE;
-  return inside_rings (outline, u, v) && !inside_left_out (outline, u, v);
+  int cell = tf_grid_cell (&outline->grid, u, v);
+  if (cell < 0 || outline->grid.without[cell] != TF_CELL_ASK)
+    return cell >= 0 && outline->grid.without[cell] == TF_CELL_IN;
+  return tf_outline_inside_rings (outline, u, v) && !tf_outline_inside_left_out (outline, u, v);
 }
 
 gboolean
 tf_outline_contains_rings (const TfOutline *outline, const double unit[3])
 {
   double u, v;
-  if (!(dot (unit, outline->cap_unit) >= outline->cap_cos)
-      || !tf_tangent_project (&outline->tangent, unit, &u, &v))
+  if (!tf_tangent_project (&outline->tangent, unit, &u, &v))
     return FALSE;
-  return inside_rings (outline, u, v);
+  int cell = tf_grid_cell (&outline->grid, u, v);
+  if (cell < 0 || outline->grid.rings[cell] != TF_CELL_ASK)
+    return cell >= 0 && outline->grid.rings[cell] == TF_CELL_IN;
+  return tf_outline_inside_rings (outline, u, v);
 }
 
 /* -- finishing ------------------------------------------------------------------------------- */
@@ -235,9 +239,6 @@ make_cap (TfOutline *outline)
           outline->cap_radius = MAX (outline->cap_radius, r);
         }
     }
-  for (int k = 0; k < 3; k++)
-    outline->cap_unit[k] = outline->tangent.centre[k];
-  outline->cap_cos = cos (outline->cap_radius * TF_DEG) - 1e-12;
 }
 
 gboolean
@@ -260,5 +261,6 @@ tf_outline_project (TfOutline *outline)
     if (!project_ring (g_ptr_array_index (outline->left_out, k), &outline->tangent))
       return FALSE;
   make_cap (outline);
+  tf_outline_make_grid (outline);
   return TRUE;
 }

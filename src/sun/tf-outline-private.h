@@ -32,6 +32,23 @@ typedef struct
   guint *slab_edges; /* edge k joins vertices k and k + 1 */
 } TfRing;
 
+/* A grid of cells over all rings. A cell that no edge touches is wholly inside or wholly outside, so
+ * that most points are settled by looking it up. */
+enum
+{
+  TF_GRID = 32,
+  TF_CELL_OUT = 0,
+  TF_CELL_IN = 1,
+  TF_CELL_ASK = 2, /* an edge runs through it */
+};
+
+typedef struct
+{
+  double u_min, v_min, per_u, per_v; /* cells a unit of u, of v */
+  guint8 rings[TF_GRID * TF_GRID];   /* left-out areas count as inside */
+  guint8 without[TF_GRID * TF_GRID]; /* left-out areas are outside */
+} TfGrid;
+
 struct _TfOutline
 {
   TfTime time;
@@ -40,7 +57,7 @@ struct _TfOutline
   guint n_pins;
   TfTangent tangent;
   double cap_lon, cap_lat, cap_radius; /* deg */
-  double cap_unit[3], cap_cos;
+  TfGrid grid;
 };
 
 /** tf_outline_start: an outline without rings, to be filled and then finished. */
@@ -65,6 +82,22 @@ gboolean tf_tangent_project (const TfTangent *tangent, const double unit[3], dou
 void tf_tangent_lift (const TfTangent *tangent, double u, double v, double unit[3]);
 TfVertex tf_vertex_of (const double unit[3]);
 
+/** tf_outline_make_grid: after the rings are projected. */
+void tf_outline_make_grid (TfOutline *outline);
+/** tf_grid_cell: number of the cell of (u, v); -1 outside the grid. */
+static inline int
+tf_grid_cell (const TfGrid *grid, double u, double v)
+{
+  double column = (u - grid->u_min) * grid->per_u, row = (v - grid->v_min) * grid->per_v;
+  if (!(column >= 0.0 && column < TF_GRID && row >= 0.0 && row < TF_GRID))
+    return -1;
+  return (int)row * TF_GRID + (int)column;
+}
+
+/** tf_outline_inside_rings: even-odd over all rings, of a point of the plane.
+ * tf_outline_inside_left_out: in any left-out area. */
+gboolean tf_outline_inside_rings (const TfOutline *outline, double u, double v);
+gboolean tf_outline_inside_left_out (const TfOutline *outline, double u, double v);
 gboolean tf_ring_contains (const TfRing *ring, double u, double v);
 /** tf_ring_crossings: appends the u of every crossing of the line at @v to @u (doubles). */
 void tf_ring_crossings (const TfRing *ring, double v, GArray *u);

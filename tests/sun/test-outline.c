@@ -117,7 +117,7 @@ test_stars (void)
         }
       g_autoptr (TfOutline) outline = tf_outline_new (noon (), ring, n, NULL);
       g_assert_nonnull (outline);
-      for (int point = 0; point < 300; point++)
+      for (int point = 0; point < 1000; point++)
         {
           double lat = CLAMP (lat0 + g_rand_double_range (rand, -14.0, 14.0), -90.0, 90.0);
           double lon
