@@ -23,10 +23,11 @@ TfColour tf_chart_edge (const TfChartStyle *style);
 /** tf_chart_diamond_path: adds a diamond to the path. */
 void tf_chart_diamond_path (cairo_t *cr, double x, double y, double radius);
 /** tf_chart_measure: size of a label, user units. */
-void tf_chart_measure (cairo_t *cr, const TfChartStyle *style, const char *text, double *width, double *height);
+void tf_chart_measure (cairo_t *cr, const TfChartStyle *style, const char *text, double *width,
+                       double *height);
 /** tf_chart_text_on: a label with a @halo about its letters, for pictures of any brightness. */
-double tf_chart_text_on (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x, double align_y,
-                         TfColour halo, TfColour colour, const char *text);
+double tf_chart_text_on (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x,
+                         double align_y, TfColour halo, TfColour colour, const char *text);
 /** tf_chart_dup_degrees: "−24°", "+9°" with @sign; a dash for NaN. */
 char *tf_chart_dup_degrees (double deg, gboolean sign);
 

@@ -10,8 +10,9 @@
 
 #include "tf-number.h"
 
-/* The palette. Against its ground text has a contrast of at least 4.5, a symbol at least 3 (ratios of
- * WCAG 2.1, 1.4.3 and 1.4.11); the amber of the light ground reaches it by the edge round its disc. */
+/* The palette. Against its ground text has a contrast of at least 4.5, a symbol at least 3 (ratios
+ * of WCAG 2.1, 1.4.3 and 1.4.11); the amber of the light ground reaches it by the edge round its
+ * disc. */
 typedef struct
 {
   guint32 ink, faint, ground, band, line;
@@ -20,19 +21,24 @@ typedef struct
 
 static const Palette palettes[2][2] = {
   {
-      { 0x23272E, 0x63676E, 0xFAF9F7, 0xECEBE8, 0xD3D2CE, 0xD98A00, 0x4B5FD6, 0xC7293A, 0x0D6B66, 0x5B6470 },
-      { 0x000000, 0x333333, 0xFFFFFF, 0xE2E2E2, 0x808080, 0x8A5600, 0x2B3BB0, 0xA00D20, 0x064D49, 0x3B434C },
+      { 0x23272E, 0x63676E, 0xFAF9F7, 0xECEBE8, 0xD3D2CE, 0xD98A00, 0x4B5FD6, 0xC7293A, 0x0D6B66,
+        0x5B6470 },
+      { 0x000000, 0x333333, 0xFFFFFF, 0xE2E2E2, 0x808080, 0x8A5600, 0x2B3BB0, 0xA00D20, 0x064D49,
+        0x3B434C },
   },
   {
-      { 0xE9EAEC, 0xA6AAB1, 0x1B1C20, 0x282A30, 0x43464E, 0xF0A32C, 0x8F9CFF, 0xFF6673, 0x45B8AF, 0xA3ADB8 },
-      { 0xFFFFFF, 0xD6D6D6, 0x000000, 0x262626, 0x8A8A8A, 0xFFBE55, 0xB3BDFF, 0xFF8F98, 0x74DCD3, 0xCBD3DC },
+      { 0xE9EAEC, 0xA6AAB1, 0x1B1C20, 0x282A30, 0x43464E, 0xF0A32C, 0x8F9CFF, 0xFF6673, 0x45B8AF,
+        0xA3ADB8 },
+      { 0xFFFFFF, 0xD6D6D6, 0x000000, 0x262626, 0x8A8A8A, 0xFFBE55, 0xB3BDFF, 0xFF8F98, 0x74DCD3,
+        0xCBD3DC },
   },
 };
 
 static TfColour
 colour_of (guint32 rgb)
 {
-  return (TfColour){ (rgb >> 16 & 255) / 255.0, (rgb >> 8 & 255) / 255.0, (rgb & 255) / 255.0, 1.0 };
+  return (TfColour){ (rgb >> 16 & 255) / 255.0, (rgb >> 8 & 255) / 255.0, (rgb & 255) / 255.0,
+                     1.0 };
 }
 
 TfChartStyle
@@ -72,7 +78,8 @@ tf_chart_set_alpha (cairo_t *cr, TfColour colour, double alpha)
 TfColour
 tf_chart_mix (TfColour a, TfColour b, double share)
 {
-  return (TfColour){ a.r + share * (b.r - a.r), a.g + share * (b.g - a.g), a.b + share * (b.b - a.b), a.a };
+  return (TfColour){ a.r + share * (b.r - a.r), a.g + share * (b.g - a.g),
+                     a.b + share * (b.b - a.b), a.a };
 }
 
 TfColour
@@ -92,7 +99,8 @@ circle (cairo_t *cr, double x, double y, double radius)
 }
 
 void
-tf_chart_pole (cairo_t *cr, const TfChartStyle *style, double x, double y, double radius, int polarity)
+tf_chart_pole (cairo_t *cr, const TfChartStyle *style, double x, double y, double radius,
+               int polarity)
 {
   double width = CLAMP (radius * 0.36, 1.0, 3.0);
   cairo_save (cr);
@@ -158,7 +166,8 @@ draw_struck (cairo_t *cr, const TfChartStyle *style, double x, double y, double 
 }
 
 void
-tf_chart_diamond (cairo_t *cr, const TfChartStyle *style, double x, double y, double radius, TfDiamond kind)
+tf_chart_diamond (cairo_t *cr, const TfChartStyle *style, double x, double y, double radius,
+                  TfDiamond kind)
 {
   cairo_save (cr);
   cairo_new_path (cr);
@@ -183,7 +192,8 @@ static PangoLayout *
 new_layout (cairo_t *cr, const TfChartStyle *style, const char *text)
 {
   PangoLayout *layout = pango_cairo_create_layout (cr);
-  PangoFontDescription *font = pango_font_description_from_string (style->font != NULL ? style->font : "Sans");
+  PangoFontDescription *font
+      = pango_font_description_from_string (style->font != NULL ? style->font : "Sans");
   pango_font_description_set_absolute_size (font, MAX (style->text_pt, 1.0) * PANGO_SCALE);
   pango_layout_set_font_description (layout, font);
   pango_layout_set_text (layout, text, -1);
@@ -192,27 +202,28 @@ new_layout (cairo_t *cr, const TfChartStyle *style, const char *text)
 }
 
 void
-tf_chart_measure (cairo_t *cr, const TfChartStyle *style, const char *text, double *width, double *height)
+tf_chart_measure (cairo_t *cr, const TfChartStyle *style, const char *text, double *width,
+                  double *height)
 {
   g_autoptr (PangoLayout) layout = new_layout (cr, style, text != NULL ? text : "");
   PangoRectangle box;
   pango_layout_get_extents (layout, NULL, &box);
   if (width != NULL)
-    *width = (double) box.width / PANGO_SCALE;
+    *width = (double)box.width / PANGO_SCALE;
   if (height != NULL)
-    *height = (double) box.height / PANGO_SCALE;
+    *height = (double)box.height / PANGO_SCALE;
 }
 
 static double
-put_text (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x, double align_y,
-          const TfColour *halo, TfColour colour, const char *text)
+put_text (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x,
+          double align_y, const TfColour *halo, TfColour colour, const char *text)
 {
   if (text == NULL || *text == '\0' || !isfinite (x) || !isfinite (y))
     return 0;
   g_autoptr (PangoLayout) layout = new_layout (cr, style, text);
   PangoRectangle box;
   pango_layout_get_extents (layout, NULL, &box);
-  double width = (double) box.width / PANGO_SCALE, height = (double) box.height / PANGO_SCALE;
+  double width = (double)box.width / PANGO_SCALE, height = (double)box.height / PANGO_SCALE;
   cairo_save (cr);
   cairo_new_path (cr);
   cairo_move_to (cr, x - align_x * width, y - align_y * height);
@@ -232,15 +243,15 @@ put_text (cairo_t *cr, const TfChartStyle *style, double x, double y, double ali
 }
 
 double
-tf_chart_text (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x, double align_y,
-               TfColour colour, const char *text)
+tf_chart_text (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x,
+               double align_y, TfColour colour, const char *text)
 {
   return put_text (cr, style, x, y, align_x, align_y, NULL, colour, text);
 }
 
 double
-tf_chart_text_on (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x, double align_y,
-                  TfColour halo, TfColour colour, const char *text)
+tf_chart_text_on (cairo_t *cr, const TfChartStyle *style, double x, double y, double align_x,
+                  double align_y, TfColour halo, TfColour colour, const char *text)
 {
   return put_text (cr, style, x, y, align_x, align_y, &halo, colour, text);
 }
@@ -252,11 +263,11 @@ tf_chart_dup_place (double lat_deg, double cmd_deg)
 {
   if (!isfinite (lat_deg))
     return g_strdup ("—");
-  int lat = (int) lround (fabs (lat_deg));
+  int lat = (int)lround (fabs (lat_deg));
   const char *north = lat_deg < 0 ? C_ ("south", "S") : C_ ("north", "N");
   if (!isfinite (cmd_deg))
     return g_strdup_printf ("%s%02d", north, lat);
-  int cmd = (int) lround (fabs (cmd_deg));
+  int cmd = (int)lround (fabs (cmd_deg));
   const char *west = cmd_deg < 0 ? C_ ("east", "E") : C_ ("west", "W");
   return g_strdup_printf ("%s%02d %s%02d", north, lat, west, cmd);
 }
@@ -278,7 +289,7 @@ tf_chart_dup_flux (double mx)
     return g_strdup ("—");
   if (!(fabs (mx) > 0))
     return g_strdup (_ ("0 Mx"));
-  int power = (int) floor (log10 (fabs (mx)));
+  int power = (int)floor (log10 (fabs (mx)));
   double digits = fabs (mx) / pow (10, power);
   if (digits >= 9.95)
     {

@@ -17,7 +17,7 @@ typedef struct
   double name_y;         /* top of the relation's name */
 } Layout;
 
-#define PAD 4.0
+#define PAD      4.0
 #define MIN_TEXT 8.0
 
 static double
@@ -183,7 +183,8 @@ draw_axis (cairo_t *cr, const Layout *at, const TfDial *dial, const TfChartStyle
 }
 
 static void
-draw_witnesses (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, double x, double y, double radius)
+draw_witnesses (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, double x, double y,
+                double radius)
 {
   for (int k = 0; k < 3; k++)
     {
@@ -201,7 +202,8 @@ draw_witnesses (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, doub
 
 /* A label and a symbol after it, or, in the column at the right, below it. */
 static double
-draw_expected (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, double x, double y, double radius)
+draw_expected (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, double x, double y,
+               double radius)
 {
   double width = tf_chart_text (cr, style, x, y, 0, 0.5, style->faint, _ ("expected"));
   tf_chart_pole (cr, style, x + width + 2 * PAD + radius, y, radius, dial->expected);
@@ -235,8 +237,10 @@ draw_under (cairo_t *cr, const Layout *at, const TfDial *dial, const TfChartStyl
 static void
 draw_words (cairo_t *cr, const Layout *at, const TfDial *dial, const TfChartStyle *style)
 {
-  tf_chart_text (cr, style, at->x - at->radius - PAD, at->y, 1, 0.5, style->faint, C_ ("east", "E"));
-  tf_chart_text (cr, style, at->x + at->radius + PAD, at->y, 0, 0.5, style->faint, C_ ("west", "W"));
+  tf_chart_text (cr, style, at->x - at->radius - PAD, at->y, 1, 0.5, style->faint,
+                 C_ ("east", "E"));
+  tf_chart_text (cr, style, at->x + at->radius + PAD, at->y, 0, 0.5, style->faint,
+                 C_ ("west", "W"));
   if (dial->joy_name != NULL && has_joy (dial))
     tf_chart_text (cr, style, at->x, at->name_y, 0.5, 0, style->faint, dial->joy_name);
   if (at->beside)
@@ -271,7 +275,10 @@ tf_dial_draw (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea
 static const char *
 polarity_word (int polarity)
 {
-  return polarity == 2 ? _ ("absent") : polarity > 0 ? _ ("positive") : polarity < 0 ? _ ("negative") : _ ("undecided");
+  return polarity == 2  ? _ ("absent")
+         : polarity > 0 ? _ ("positive")
+         : polarity < 0 ? _ ("negative")
+                        : _ ("undecided");
 }
 
 static void
@@ -298,12 +305,14 @@ tf_dial_dup_description (const TfDial *dial)
   append_axis (text, dial);
   g_string_append_c (text, ' ');
   if (dial->leading_polarity != 0)
-    g_string_append_printf (text, _ ("Leading polarity %s."), polarity_word (dial->leading_polarity));
+    g_string_append_printf (text, _ ("Leading polarity %s."),
+                            polarity_word (dial->leading_polarity));
   else
     g_string_append (text, _ ("Leading polarity unknown."));
   g_string_append_c (text, ' ');
   if (dial->expected != 0)
-    g_string_append_printf (text, _ ("Hale’s law expects %s to lead."), polarity_word (dial->expected));
+    g_string_append_printf (text, _ ("Hale’s law expects %s to lead."),
+                            polarity_word (dial->expected));
   else
     g_string_append (text, _ ("What Hale’s law expects is unknown."));
   if (has_joy (dial))

@@ -21,7 +21,8 @@ overlap (const double a[4], const double b[4])
 static gboolean
 within (const double a[4], TfArea area)
 {
-  return a[0] >= area.x && a[1] >= area.y && a[2] <= area.x + area.width && a[3] <= area.y + area.height;
+  return a[0] >= area.x && a[1] >= area.y && a[2] <= area.x + area.width
+         && a[3] <= area.y + area.height;
 }
 
 /* The places to try, in order: above, below, right, left of the outline. */
@@ -43,7 +44,8 @@ place_at (int place, const double outline[4], double width, double height, doubl
   label[3] = y + height;
 }
 
-/* Outlines and labels that a label at @label would lie upon; one outside the area counts as many. */
+/* Outlines and labels that a label at @label would lie upon; one outside the area counts as many.
+ * */
 static guint
 clashes (const double label[4], TfArea area, double (*boxes)[4], guint n, const GArray *taken)
 {
@@ -56,8 +58,8 @@ clashes (const double label[4], TfArea area, double (*boxes)[4], guint n, const 
 }
 
 static void
-draw_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item,
-            const double label[4], gboolean breaks)
+draw_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+            const TfOverlayItem *item, const double label[4], gboolean breaks)
 {
   double x = label[0], y = (label[1] + label[3]) / 2, radius = style->text_pt * 0.42;
   TfColour halo = tf_overlay_halo_colour (overlay);
@@ -67,12 +69,13 @@ draw_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, co
       tf_chart_diamond (cr, &over, x + radius, y, radius, TF_DIAMOND_STRUCK);
       x += 2 * radius + GAP;
     }
-  tf_chart_text_on (cr, style, x, y, 0, 0.5, halo, tf_overlay_line_colour (overlay, style, item), item->label);
+  tf_chart_text_on (cr, style, x, y, 0, 0.5, halo, tf_overlay_line_colour (overlay, style, item),
+                    item->label);
 }
 
 static void
-place_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, TfArea area, double (*boxes)[4],
-             guint k, GArray *taken)
+place_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, TfArea area,
+             double (*boxes)[4], guint k, GArray *taken)
 {
   const TfOverlayItem *item = &overlay->items[k];
   gboolean breaks = item->verdict == TF_VERDICT_BREAKS;
@@ -99,8 +102,8 @@ place_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, T
 
 /* The chosen item is placed first, so that it has the first choice. */
 void
-tf_overlay_draw_labels (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, TfArea area,
-                        double (*boxes)[4])
+tf_overlay_draw_labels (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+                        TfArea area, double (*boxes)[4])
 {
   g_autoptr (GArray) taken = g_array_new (FALSE, FALSE, sizeof (Box));
   double seen[4] = { area.x, area.y, area.x + area.width, area.y + area.height };

@@ -7,9 +7,9 @@
 
 #include "tf-constants.h"
 
-#define STEP_DEG 1.0    /* of a great circle between two points of a trail */
-#define JUMP_UNITS 6.0  /* steps shorter than this are never looked at for a seam */
-#define HALVINGS 12     /* of a step in which the line is lost */
+#define STEP_DEG   1.0 /* of a great circle between two points of a trail */
+#define JUMP_UNITS 6.0 /* steps shorter than this are never looked at for a seam */
+#define HALVINGS   12  /* of a step in which the line is lost */
 
 TfTrail *
 tf_trail_new (void)
@@ -40,7 +40,8 @@ const TfTrailPoint *
 tf_trail_get_piece (const TfTrail *trail, guint k, guint *n)
 {
   guint start = g_array_index (trail->starts, guint, k);
-  guint end = k + 1 < trail->starts->len ? g_array_index (trail->starts, guint, k + 1) : trail->points->len;
+  guint end = k + 1 < trail->starts->len ? g_array_index (trail->starts, guint, k + 1)
+                                         : trail->points->len;
   *n = end - start;
   return &g_array_index (trail->points, TfTrailPoint, start);
 }
@@ -73,8 +74,8 @@ see (const Walk *walk, double t, TfTrailPoint *point)
 {
   double lon, lat;
   walk->func (t, &lon, &lat, walk->line);
-  return walk->overlay->project (lon, lat, &point->x, &point->y, walk->overlay->data) && isfinite (point->x)
-         && isfinite (point->y);
+  return walk->overlay->project (lon, lat, &point->x, &point->y, walk->overlay->data)
+         && isfinite (point->x) && isfinite (point->y);
 }
 
 static double
@@ -102,7 +103,8 @@ find_limb (const Walk *walk, double seen, double lost, TfTrailPoint at)
   return at;
 }
 
-/* On a smooth line the half-way point lies near the middle of the step; across a seam it lies at one of its ends. */
+/* On a smooth line the half-way point lies near the middle of the step; across a seam it lies at
+ * one of its ends. */
 static gboolean
 jumps (const Walk *walk, double t0, TfTrailPoint a, double t1, TfTrailPoint b)
 {
@@ -136,8 +138,8 @@ find_seam (const Walk *walk, double t0, TfTrailPoint *a, double t1, TfTrailPoint
 }
 
 static void
-step_on (TfTrail *trail, const Walk *walk, double t0, gboolean saw0, TfTrailPoint a, double t1, gboolean saw1,
-         TfTrailPoint b)
+step_on (TfTrail *trail, const Walk *walk, double t0, gboolean saw0, TfTrailPoint a, double t1,
+         gboolean saw1, TfTrailPoint b)
 {
   if (saw0 && saw1)
     {
@@ -162,8 +164,8 @@ step_on (TfTrail *trail, const Walk *walk, double t0, gboolean saw0, TfTrailPoin
 }
 
 void
-tf_trail_add_line (TfTrail *trail, const TfOverlay *overlay, TfTrailFunc func, gconstpointer line, guint n,
-                   gboolean joined)
+tf_trail_add_line (TfTrail *trail, const TfOverlay *overlay, TfTrailFunc func, gconstpointer line,
+                   guint n, gboolean joined)
 {
   Walk walk = { overlay, func, line };
   TfTrailPoint a = { 0, 0 }, b = { 0, 0 };
@@ -172,7 +174,7 @@ tf_trail_add_line (TfTrail *trail, const TfOverlay *overlay, TfTrailFunc func, g
     begin_piece (trail, a);
   for (guint k = 1; k <= n; k++)
     {
-      double t0 = (double) (k - 1) / n, t1 = (double) k / n;
+      double t0 = (double)(k - 1) / n, t1 = (double)k / n;
       gboolean saw1 = see (&walk, t1, &b);
       step_on (trail, &walk, t0, saw0, a, t1, saw1, b);
       a = b;
@@ -231,12 +233,13 @@ along_arc (double t, double *lon_deg, double *lat_deg, gconstpointer line)
 }
 
 void
-tf_trail_add_arc (TfTrail *trail, const TfOverlay *overlay, TfVertex from, TfVertex to, gboolean joined)
+tf_trail_add_arc (TfTrail *trail, const TfOverlay *overlay, TfVertex from, TfVertex to,
+                  gboolean joined)
 {
   if (!isfinite (from.lon_deg + from.lat_deg + to.lon_deg + to.lat_deg))
     return;
   Arc arc = arc_of (from, to);
-  guint n = (guint) CLAMP (ceil (arc.angle / TF_DEG / STEP_DEG), 1, 180);
+  guint n = (guint)CLAMP (ceil (arc.angle / TF_DEG / STEP_DEG), 1, 180);
   tf_trail_add_line (trail, overlay, along_arc, &arc, n, joined);
 }
 
@@ -301,7 +304,8 @@ tf_trail_contains (const TfTrail *trail, double x, double y)
       guint n;
       const TfTrailPoint *p = tf_trail_get_piece (trail, k, &n);
       for (guint j = 0, i = n - 1; j < n; i = j++)
-        if ((p[j].y > y) != (p[i].y > y) && x < (p[i].x - p[j].x) * (y - p[j].y) / (p[i].y - p[j].y) + p[j].x)
+        if ((p[j].y > y) != (p[i].y > y)
+            && x < (p[i].x - p[j].x) * (y - p[j].y) / (p[i].y - p[j].y) + p[j].x)
           inside = !inside;
     }
   return inside;

@@ -10,7 +10,8 @@
 
 /* -- colours --------------------------------------------------------------------------------- */
 
-/* A magnetogram is mid grey with white and black in it, so that each line lies on a broader one of the other brightness. */
+/* A magnetogram is mid grey with white and black in it, so that each line lies on a broader one of
+ * the other brightness. */
 TfColour
 tf_overlay_halo_colour (const TfOverlay *overlay)
 {
@@ -18,7 +19,8 @@ tf_overlay_halo_colour (const TfOverlay *overlay)
 }
 
 TfColour
-tf_overlay_line_colour (const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item)
+tf_overlay_line_colour (const TfOverlay *overlay, const TfChartStyle *style,
+                        const TfOverlayItem *item)
 {
   gboolean dark = overlay->on_dark;
   if (style->contrast)
@@ -58,7 +60,7 @@ stroke_on (cairo_t *cr, TfColour halo, TfColour line, double width, const double
 static void
 along_meridian (double t, double *lon_deg, double *lat_deg, gconstpointer line)
 {
-  *lon_deg = *(const double *) line;
+  *lon_deg = *(const double *)line;
   *lat_deg = -90 + 180 * t;
 }
 
@@ -66,7 +68,7 @@ static void
 along_parallel (double t, double *lon_deg, double *lat_deg, gconstpointer line)
 {
   *lon_deg = fmod (360 * t, 360);
-  *lat_deg = *(const double *) line;
+  *lat_deg = *(const double *)line;
 }
 
 static void
@@ -116,7 +118,8 @@ draw_graticule (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style
 static void
 draw_limb (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style)
 {
-  if (!(overlay->limb_rx > 0) || !(overlay->limb_ry > 0) || !isfinite (overlay->limb_x + overlay->limb_y))
+  if (!(overlay->limb_rx > 0) || !(overlay->limb_ry > 0)
+      || !isfinite (overlay->limb_x + overlay->limb_y))
     return;
   TfColour line = grid_colour (overlay, style);
   cairo_save (cr);
@@ -135,17 +138,23 @@ draw_limb (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style)
 /* -- outlines -------------------------------------------------------------------------------- */
 
 static void
-stroke_item (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item)
+stroke_item (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+             const TfOverlayItem *item)
 {
   static const double dashes[] = { 6, 4 }, dots[] = { 1.5, 3.5 };
   gboolean ghost = item->stroke == TF_STROKE_GHOST, dashed = item->stroke == TF_STROKE_HINT;
   double width = (item->chosen ? 2.6 : 1.4) + (style->contrast ? 0.6 : 0);
-  stroke_on (cr, tf_overlay_halo_colour (overlay), tf_overlay_line_colour (overlay, style, item), width,
-             ghost ? dots : dashed ? dashes : NULL, ghost || dashed ? 2 : 0);
+  stroke_on (cr, tf_overlay_halo_colour (overlay), tf_overlay_line_colour (overlay, style, item),
+             width,
+             ghost    ? dots
+             : dashed ? dashes
+                      : NULL,
+             ghost || dashed ? 2 : 0);
 }
 
 static void
-draw_rings (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item, double box[4])
+draw_rings (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+            const TfOverlayItem *item, double box[4])
 {
   const TfOutline *outline = item->outline;
   cairo_new_path (cr);
@@ -165,13 +174,14 @@ draw_rings (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, co
       const TfVertex *ring = tf_outline_get_ring (outline, k, TRUE, &n);
       g_autoptr (TfTrail) trail = tf_trail_new_ring (overlay, ring, n);
       tf_trail_path (trail, cr);
-      stroke_on (cr, tf_overlay_halo_colour (overlay), tf_overlay_line_colour (overlay, style, item), 1, dots, 2);
+      stroke_on (cr, tf_overlay_halo_colour (overlay),
+                 tf_overlay_line_colour (overlay, style, item), 1, dots, 2);
     }
 }
 
 static void
-draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, double x, double y, double radius,
-           int polarity)
+draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, double x, double y,
+           double radius, int polarity)
 {
   cairo_new_path (cr);
   cairo_arc (cr, x, y, radius + 1.5, 0, 2 * G_PI);
@@ -187,7 +197,8 @@ draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, dou
 
 /* Small regions get small poles, so that the two stay apart. */
 static void
-draw_poles (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item)
+draw_poles (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+            const TfOverlayItem *item)
 {
   TfChartStyle over = tf_chart_style (overlay->on_dark, style->contrast, style->text_pt);
   const double *places[2] = { item->negative, item->positive };
@@ -204,9 +215,11 @@ draw_poles (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, co
 }
 
 static void
-draw_item_axis (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, const TfOverlayItem *item)
+draw_item_axis (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+                const TfOverlayItem *item)
 {
-  TfVertex positive = { item->positive[0], item->positive[1] }, negative = { item->negative[0], item->negative[1] };
+  TfVertex positive = { item->positive[0], item->positive[1] },
+           negative = { item->negative[0], item->negative[1] };
   g_autoptr (TfTrail) trail = tf_trail_new ();
   tf_trail_add_arc (trail, overlay, positive, negative, FALSE);
   cairo_new_path (cr);
@@ -221,7 +234,8 @@ draw_draft (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style)
 {
   static const double dash[] = { 2, 4 };
   TfOverlayItem item = { .chosen = TRUE };
-  TfColour halo = tf_overlay_halo_colour (overlay), line = tf_overlay_line_colour (overlay, style, &item);
+  TfColour halo = tf_overlay_halo_colour (overlay),
+           line = tf_overlay_line_colour (overlay, style, &item);
   guint n = overlay->n_draft;
   if (overlay->draft == NULL || n == 0)
     return;
@@ -317,11 +331,13 @@ tf_overlay_hit (const TfOverlay *overlay, TfArea area, double x, double y)
     return -1;
   for (guint k = 0; k < overlay->n_items; k++)
     {
-      double square = overlay->items[k].outline != NULL ? hit_area (overlay, overlay->items[k].outline, x, y) : INFINITY;
+      double square = overlay->items[k].outline != NULL
+                          ? hit_area (overlay, overlay->items[k].outline, x, y)
+                          : INFINITY;
       if (square < best)
         {
           best = square;
-          found = (int) k;
+          found = (int)k;
         }
     }
   return found;

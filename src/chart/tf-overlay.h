@@ -3,8 +3,8 @@
  */
 #pragma once
 
-/* What lies over the plate: graticule (10 deg), limb, central meridian, outlines, axes, labels. The caller gives a projection
- * function, so that the same drawing serves every look and the export.
+/* What lies over the plate: graticule (10 deg), limb, central meridian, outlines, axes, labels. The
+ * caller gives a projection function, so that the same drawing serves every look and the export.
  */
 
 #include "tf-chart.h"
@@ -13,24 +13,25 @@
 G_BEGIN_DECLS
 
 /** TfProjectFunc: Carrington place -> point of the area; FALSE when it is not to be seen. */
-typedef gboolean (*TfProjectFunc) (double lon_deg, double lat_deg, double *x, double *y, gpointer data);
+typedef gboolean (*TfProjectFunc) (double lon_deg, double lat_deg, double *x, double *y,
+                                   gpointer data);
 
 typedef enum
 {
-  TF_STROKE_HINT,   /* dashed */
-  TF_STROKE_MARK,   /* solid */
-  TF_STROKE_DRAFT,  /* being drawn */
-  TF_STROKE_GHOST,  /* carried from another time */
+  TF_STROKE_HINT,  /* dashed */
+  TF_STROKE_MARK,  /* solid */
+  TF_STROKE_DRAFT, /* being drawn */
+  TF_STROKE_GHOST, /* carried from another time */
 } TfStroke;
 
 typedef struct
 {
-  const TfOutline *outline;  /* borrowed; carried to the frame's time by the caller */
+  const TfOutline *outline; /* borrowed; carried to the frame's time by the caller */
   TfStroke stroke;
   gboolean chosen;
-  const char *label;         /* "0412", "hint"; nullable */
+  const char *label;               /* "0412", "hint"; nullable */
   double positive[2], negative[2]; /* poles, Carrington lon, lat; NaN: no axis */
-  int verdict;               /* TfVerdictKind, -1 none: a small diamond beside the label when it breaks */
+  int verdict; /* TfVerdictKind, -1 none: a small diamond beside the label when it breaks */
 } TfOverlayItem;
 
 typedef struct
@@ -38,17 +39,18 @@ typedef struct
   TfProjectFunc project;
   gpointer data;
   double central_carrington_deg; /* NaN on maps */
-  double step_deg;           /* 10 */
+  double step_deg;               /* 10 */
   gboolean graticule, outlines, axes, labels;
   const TfOverlayItem *items;
   guint n_items;
   double limb_x, limb_y, limb_rx, limb_ry, limb_turn; /* ellipse of the limb; rx NaN: none */
-  const double (*draft)[2];  /* line being drawn, in area points; nullable */
+  const double (*draft)[2]; /* line being drawn, in area points; nullable */
   guint n_draft;
-  gboolean on_dark;          /* the picture under it is dark */
+  gboolean on_dark; /* the picture under it is dark */
 } TfOverlay;
 
-void tf_overlay_draw (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, TfArea area);
+void
+tf_overlay_draw (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, TfArea area);
 /** tf_overlay_hit: index of the item whose outline holds the point (the smallest), or -1. */
 int tf_overlay_hit (const TfOverlay *overlay, TfArea area, double x, double y);
 

@@ -8,8 +8,9 @@
 #include "tf-chart-private.h"
 #include "tf-verdict.h"
 
-/* Dots one by one. On pixels they are rastered here (a path of cairo's costs some 30 us a dot, this one below 1 us);
- * in PDF and SVG they are paths. Both have the same places, sizes and colours: hints first, then marks, what breaks last.
+/* Dots one by one. On pixels they are rastered here (a path of cairo's costs some 30 us a dot, this
+ * one below 1 us); in PDF and SVG they are paths. Both have the same places, sizes and colours:
+ * hints first, then marks, what breaks last.
  */
 
 #define HINT_ALPHA 0.55
@@ -20,8 +21,8 @@ typedef struct
 {
   double x, y, radius;
   double alpha;
-  int polarity;     /* 1 disc, -1 ring, 0 plain disc */
-  gboolean breaks;  /* a struck diamond instead */
+  int polarity;    /* 1 disc, -1 ring, 0 plain disc */
+  gboolean breaks; /* a struck diamond instead */
 } Dot;
 
 static Dot
@@ -30,7 +31,7 @@ dot_of (const TfWings *wings, TfArea plot, const TfWingsDot *dot)
   gboolean breaks = !wings->plain && dot->verdict == TF_VERDICT_BREAKS;
   double radius = tf_wings_radius (dot->flux_mx);
   return (Dot){ .x = tf_wings_x (wings, plot, dot->year),
-                .y = tf_wings_y (wings, plot, (double) dot->lat_deg),
+                .y = tf_wings_y (wings, plot, (double)dot->lat_deg),
                 .radius = breaks ? MAX (radius, 2.5) + 1.5 : radius,
                 .alpha = dot->hint ? HINT_ALPHA : 1,
                 .polarity = wings->plain ? 0 : dot->leading,
@@ -45,8 +46,8 @@ ring_width (double radius)
 
 /* Calls @put for each dot in drawing order. */
 static void
-each_dot (const TfWings *wings, TfArea plot, guint first, guint end, void (*put) (const Dot *dot, gpointer data),
-          gpointer data)
+each_dot (const TfWings *wings, TfArea plot, guint first, guint end,
+          void (*put) (const Dot *dot, gpointer data), gpointer data)
 {
   for (int layer = 0; layer < 3; layer++)
     for (guint k = first; k < end; k++)
@@ -80,7 +81,7 @@ blend (guint32 *pixel, TfColour colour, double alpha)
   for (int k = 0; k < 4; k++)
     {
       double part = parts[k] * 255 * alpha + (below >> (8 * k) & 255) * (1 - alpha);
-      out |= (guint32) (part + 0.5) << (8 * k);
+      out |= (guint32)(part + 0.5) << (8 * k);
     }
   *pixel = out;
 }
@@ -104,7 +105,9 @@ put_round (const Raster *raster, guint32 *pixel, const Dot *dot, double dx, doub
     }
   else if (dot->polarity < 0)
     blend (pixel, raster->style->negative,
-           alpha * cover (far - dot->radius + ring_width (dot->radius / raster->scale_x) * raster->scale_x));
+           alpha
+               * cover (far - dot->radius
+                        + ring_width (dot->radius / raster->scale_x) * raster->scale_x));
   else
     blend (pixel, raster->style->slate, alpha * 0.9);
 }
@@ -133,14 +136,17 @@ put_raster (const Dot *dot, gpointer data)
   at.y = (dot->y - raster->plot.y) * raster->scale_y;
   at.radius = dot->radius * raster->scale_x;
   double reach = at.radius + 1.5;
-  if (!(at.x > -reach && at.x < raster->width + reach && at.y > -reach && at.y < raster->height + reach))
+  if (!(at.x > -reach && at.x < raster->width + reach && at.y > -reach
+        && at.y < raster->height + reach))
     return;
-  int left = MAX ((int) floor (at.x - reach), 0), right = MIN ((int) ceil (at.x + reach), raster->width - 1);
-  int top = MAX ((int) floor (at.y - reach), 0), foot = MIN ((int) ceil (at.y + reach), raster->height - 1);
+  int left = MAX ((int)floor (at.x - reach), 0),
+      right = MIN ((int)ceil (at.x + reach), raster->width - 1);
+  int top = MAX ((int)floor (at.y - reach), 0),
+      foot = MIN ((int)ceil (at.y + reach), raster->height - 1);
   for (int y = top; y <= foot; y++)
     for (int x = left; x <= right; x++)
       {
-        guint32 *pixel = raster->pixels + (gsize) y * (gsize) raster->stride + x;
+        guint32 *pixel = raster->pixels + (gsize)y * (gsize)raster->stride + x;
         if (at.breaks)
           put_struck (raster, pixel, &at, x + 0.5 - at.x, y + 0.5 - at.y);
         else
@@ -149,22 +155,28 @@ put_raster (const Dot *dot, gpointer data)
 }
 
 static void
-draw_pixels (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first, guint end)
+draw_pixels (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first,
+             guint end)
 {
   double one = 1, two = 0, sx, sy;
   cairo_user_to_device_distance (cr, &one, &two);
   cairo_surface_get_device_scale (cairo_get_target (cr), &sx, &sy);
   double scale = CLAMP (hypot (one, two) * sx, 0.25, 8);
-  int width = (int) ceil (MIN (plot.width * scale, RASTER_MAX));
-  int height = (int) ceil (MIN (plot.height * scale, RASTER_MAX));
+  int width = (int)ceil (MIN (plot.width * scale, RASTER_MAX));
+  int height = (int)ceil (MIN (plot.height * scale, RASTER_MAX));
   cairo_surface_t *picture = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, width, height);
   if (cairo_surface_status (picture) == CAIRO_STATUS_SUCCESS)
     {
       cairo_surface_flush (picture);
-      Raster raster = { style, tf_chart_edge (style),
-                        (guint32 *) (void *) cairo_image_surface_get_data (picture),
-                        width, height, cairo_image_surface_get_stride (picture) / 4,
-                        scale, scale, plot };
+      Raster raster = { style,
+                        tf_chart_edge (style),
+                        (guint32 *)(void *)cairo_image_surface_get_data (picture),
+                        width,
+                        height,
+                        cairo_image_surface_get_stride (picture) / 4,
+                        scale,
+                        scale,
+                        plot };
       each_dot (wings, plot, first, end, put_raster, &raster);
       cairo_surface_mark_dirty (picture);
       cairo_surface_set_device_scale (picture, scale, scale);
@@ -195,7 +207,8 @@ put_path (const Dot *dot, gpointer data)
       return;
     }
   double width = ring_width (dot->radius);
-  cairo_arc (cr, dot->x, dot->y, dot->polarity < 0 ? dot->radius - width / 2 : dot->radius, 0, 2 * G_PI);
+  cairo_arc (cr, dot->x, dot->y, dot->polarity < 0 ? dot->radius - width / 2 : dot->radius, 0,
+             2 * G_PI);
   cairo_set_line_width (cr, dot->polarity < 0 ? width : 0.5);
   if (dot->polarity < 0)
     {
@@ -203,17 +216,21 @@ put_path (const Dot *dot, gpointer data)
       cairo_stroke (cr);
       return;
     }
-  tf_chart_set_alpha (cr, dot->polarity > 0 ? paths->style->positive : paths->style->slate, dot->alpha * 0.95);
+  tf_chart_set_alpha (cr, dot->polarity > 0 ? paths->style->positive : paths->style->slate,
+                      dot->alpha * 0.95);
   cairo_fill_preserve (cr);
-  tf_chart_set_alpha (cr, dot->polarity > 0 ? tf_chart_edge (paths->style) : paths->style->slate, dot->alpha);
+  tf_chart_set_alpha (cr, dot->polarity > 0 ? tf_chart_edge (paths->style) : paths->style->slate,
+                      dot->alpha);
   cairo_stroke (cr);
 }
 
 void
-tf_wings_draw_dots (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first, guint end)
+tf_wings_draw_dots (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
+                    guint first, guint end)
 {
   cairo_surface_type_t type = cairo_surface_get_type (cairo_get_target (cr));
-  if (type == CAIRO_SURFACE_TYPE_PDF || type == CAIRO_SURFACE_TYPE_SVG || type == CAIRO_SURFACE_TYPE_PS)
+  if (type == CAIRO_SURFACE_TYPE_PDF || type == CAIRO_SURFACE_TYPE_SVG
+      || type == CAIRO_SURFACE_TYPE_PS)
     {
       Paths paths = { cr, style };
       each_dot (wings, plot, first, end, put_path, &paths);

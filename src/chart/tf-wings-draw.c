@@ -9,14 +9,16 @@
 #include "tf-chart-private.h"
 
 static void
-draw_chosen (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first, guint end)
+draw_chosen (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first,
+             guint end)
 {
   for (guint k = first; wings->chosen != 0 && k < end; k++)
     if (wings->dots[k].id == wings->chosen && isfinite (wings->dots[k].lat_deg))
       {
         const TfWingsDot *dot = &wings->dots[k];
         cairo_new_path (cr);
-        cairo_arc (cr, tf_wings_x (wings, plot, dot->year), tf_wings_y (wings, plot, (double) dot->lat_deg),
+        cairo_arc (cr, tf_wings_x (wings, plot, dot->year),
+                   tf_wings_y (wings, plot, (double)dot->lat_deg),
                    tf_wings_radius (dot->flux_mx) + 4, 0, 2 * G_PI);
         tf_chart_set (cr, style->ground);
         cairo_set_line_width (cr, 4);
@@ -36,7 +38,8 @@ draw_pick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea 
   double right = tf_wings_x (wings, plot, MAX (wings->pick_from, wings->pick_to));
   gboolean band = isfinite (wings->pick_low) && isfinite (wings->pick_high);
   double top = band ? tf_wings_y (wings, plot, MAX (wings->pick_low, wings->pick_high)) : plot.y;
-  double foot = band ? tf_wings_y (wings, plot, MIN (wings->pick_low, wings->pick_high)) : plot.y + plot.height;
+  double foot = band ? tf_wings_y (wings, plot, MIN (wings->pick_low, wings->pick_high))
+                     : plot.y + plot.height;
   cairo_rectangle (cr, left, top, right - left, foot - top);
   tf_chart_set_alpha (cr, style->teal, 0.12);
   cairo_fill_preserve (cr);
@@ -50,7 +53,8 @@ draw_frame_line (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, T
 {
   if (!(wings->frame_year >= wings->from_year && wings->frame_year <= wings->to_year))
     return;
-  double x = tf_wings_x (wings, plot, wings->frame_year), foot = plot.y + plot.height, size = style->text_pt * 0.4;
+  double x = tf_wings_x (wings, plot, wings->frame_year), foot = plot.y + plot.height,
+         size = style->text_pt * 0.4;
   tf_chart_set (cr, style->ink);
   cairo_set_line_width (cr, 1.6);
   cairo_move_to (cr, x, plot.y);
@@ -68,7 +72,8 @@ static void
 draw_inside (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area, TfArea plot)
 {
   double reach = 8 / plot.width * (wings->to_year - wings->from_year);
-  guint first = tf_wings_first (wings, wings->from_year - reach), end = tf_wings_first (wings, wings->to_year + reach);
+  guint first = tf_wings_first (wings, wings->from_year - reach),
+        end = tf_wings_first (wings, wings->to_year + reach);
   cairo_save (cr);
   cairo_rectangle (cr, plot.x, plot.y, plot.width, plot.height);
   cairo_clip (cr);

@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* The parts of the wings: geometry and hit-testing (tf-wings.c), the drawing (tf-wings-draw.c), its scale (tf-wings-scale.c), the
- * dots (tf-wings-dots.c) and the density picture (tf-wings-density.c). */
+/* The parts of the wings: geometry and hit-testing (tf-wings.c), the drawing (tf-wings-draw.c), its
+ * scale (tf-wings-scale.c), the dots (tf-wings-dots.c) and the density picture
+ * (tf-wings-density.c). */
 
 #include "tf-wings.h"
 
@@ -20,19 +21,23 @@ double tf_wings_radius (float flux_mx);
 double tf_wings_x (const TfWings *wings, TfArea plot, double year);
 double tf_wings_y (const TfWings *wings, TfArea plot, double lat_deg);
 
-/** tf_wings_draw_density: the dots first..end-1 as a grid of small cells: filled where positive polarity leads in most,
- * hollow where negative does, a stroke across where a quarter or more breaks Hale's law; the more dots the denser. */
-void tf_wings_draw_density (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first,
-                            guint end);
+/** tf_wings_draw_density: the dots first..end-1 as a grid of small cells: filled where positive
+ * polarity leads in most, hollow where negative does, a stroke across where a quarter or more
+ * breaks Hale's law; the more dots the denser. */
+void tf_wings_draw_density (cairo_t *cr, const TfWings *wings, const TfChartStyle *style,
+                            TfArea plot, guint first, guint end);
 /** tf_wings_draw_dots: the dots first..end-1 one by one. */
-void tf_wings_draw_dots (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, guint first,
-                         guint end);
+void tf_wings_draw_dots (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
+                         guint first, guint end);
 /** tf_wings_draw_scale: lines and labels of latitude and time. */
-void tf_wings_draw_scale (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot);
+void
+tf_wings_draw_scale (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot);
 /** tf_wings_draw_cycles: the cycles' bands and names. */
-void tf_wings_draw_cycles (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot);
+void
+tf_wings_draw_cycles (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot);
 /** tf_wings_draw_divides: the divides with their bands. */
-void tf_wings_draw_divides (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot);
+void
+tf_wings_draw_divides (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot);
 
 #pragma GCC visibility pop
 

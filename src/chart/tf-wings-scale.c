@@ -14,14 +14,15 @@
 /* Steps of the time scale, finest first. Days are counted within a month. */
 typedef struct
 {
-  int days, months;     /* one of them is 0 */
-  const char *form;     /* for g_date_time_format */
+  int days, months; /* one of them is 0 */
+  const char *form; /* for g_date_time_format */
 } Step;
 
 static const Step steps[] = {
-  { 1, 0, "%-d %b" }, { 2, 0, "%-d %b" }, { 5, 0, "%-d %b" }, { 10, 0, "%-d %b" }, { 0, 1, "%b %Y" },
-  { 0, 3, "%b %Y" },  { 0, 6, "%b %Y" },  { 0, 12, "%Y" },    { 0, 24, "%Y" },     { 0, 60, "%Y" },
-  { 0, 120, "%Y" },   { 0, 240, "%Y" },   { 0, 600, "%Y" },   { 0, 1200, "%Y" },
+  { 1, 0, "%-d %b" }, { 2, 0, "%-d %b" }, { 5, 0, "%-d %b" }, { 10, 0, "%-d %b" },
+  { 0, 1, "%b %Y" },  { 0, 3, "%b %Y" },  { 0, 6, "%b %Y" },  { 0, 12, "%Y" },
+  { 0, 24, "%Y" },    { 0, 60, "%Y" },    { 0, 120, "%Y" },   { 0, 240, "%Y" },
+  { 0, 600, "%Y" },   { 0, 1200, "%Y" },
 };
 
 static double
@@ -34,8 +35,8 @@ static double
 year_of (int year, int month, int day)
 {
   GDate date;
-  g_date_set_dmy (&date, (GDateDay) day, (GDateMonth) month, (GDateYear) year);
-  int days = g_date_is_leap_year ((GDateYear) year) ? 366 : 365;
+  g_date_set_dmy (&date, (GDateDay)day, (GDateMonth)month, (GDateYear)year);
+  int days = g_date_is_leap_year ((GDateYear)year) ? 366 : 365;
   return year + (g_date_get_day_of_year (&date) - 1.0) / days;
 }
 
@@ -62,8 +63,8 @@ choose_step (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfAre
 }
 
 static void
-draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, const Step *step, int year,
-           int month, int day)
+draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
+           const Step *step, int year, int month, int day)
 {
   double x = tf_wings_x (wings, plot, year_of (year, month, day)), width;
   if (x < plot.x - 0.5 || x > plot.x + plot.width + 0.5)
@@ -77,12 +78,13 @@ draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea 
   g_autofree char *label = dup_label (step, year, month, day);
   tf_chart_measure (cr, style, label, &width, NULL);
   double right = plot.x + plot.width + style->text_pt * 0.9;
-  tf_chart_text (cr, style, MIN (x - width / 2, right - width), foot + style->text_pt * 0.35, 0, 0, style->faint, label);
+  tf_chart_text (cr, style, MIN (x - width / 2, right - width), foot + style->text_pt * 0.35, 0, 0,
+                 style->faint, label);
 }
 
 static void
-draw_month (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, const Step *step, int year,
-            int month)
+draw_month (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
+            const Step *step, int year, int month)
 {
   if (step->months > 0)
     {
@@ -92,7 +94,7 @@ draw_month (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea
     }
   for (int day = 1; day <= 28 || step->days < 5; day += step->days)
     {
-      if (day > g_date_get_days_in_month ((GDateMonth) month, (GDateYear) year))
+      if (day > g_date_get_days_in_month ((GDateMonth)month, (GDateYear)year))
         break;
       if (step->days < 2 || day < 31 - step->days / 2)
         draw_tick (cr, wings, style, plot, step, year, month, day);
@@ -103,7 +105,8 @@ static void
 draw_times (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
 {
   const Step *step = choose_step (cr, wings, style, plot);
-  int from = (int) floor (CLAMP (wings->from_year, 1.0, 9000.0)), to = (int) floor (CLAMP (wings->to_year, 1.0, 9000.0));
+  int from = (int)floor (CLAMP (wings->from_year, 1.0, 9000.0)),
+      to = (int)floor (CLAMP (wings->to_year, 1.0, 9000.0));
   for (int year = from; year <= to; year++)
     if (step->months < 12 || year % (step->months / 12) == 0)
       for (int month = 1; month <= (step->months >= 12 ? 1 : 12); month++)
@@ -130,7 +133,8 @@ lat_step (const TfWings *wings, const TfChartStyle *style, TfArea plot)
 static void
 draw_latitudes (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
 {
-  double step = lat_step (wings, style, plot), top = wings->lat_max_deg > 0 ? wings->lat_max_deg : 45;
+  double step = lat_step (wings, style, plot),
+         top = wings->lat_max_deg > 0 ? wings->lat_max_deg : 45;
   for (double lat = -floor (top / step) * step; lat <= top; lat += step)
     {
       double y = floor (tf_wings_y (wings, plot, lat)) + 0.5;
@@ -156,11 +160,13 @@ tf_wings_draw_scale (cairo_t *cr, const TfWings *wings, const TfChartStyle *styl
 /* -- cycles and divides ---------------------------------------------------------------------- */
 
 static void
-draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, const TfCycle *cycle)
+draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
+            const TfCycle *cycle)
 {
   double begin = tf_time_year (tf_cycle_minimum (cycle->number));
   double end = tf_time_year (tf_cycle_minimum (cycle->number + 1)), width;
-  double from = MAX (begin, wings->from_year), to = isfinite (end) ? MIN (end, wings->to_year) : wings->to_year;
+  double from = MAX (begin, wings->from_year),
+         to = isfinite (end) ? MIN (end, wings->to_year) : wings->to_year;
   if (!(to > from))
     return;
   double left = tf_wings_x (wings, plot, from), right = tf_wings_x (wings, plot, to);
@@ -176,7 +182,8 @@ draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea
   const char *label = width + 4 <= right - left ? full : brief;
   tf_chart_measure (cr, style, label, &width, NULL);
   if (width + 4 <= right - left)
-    tf_chart_text (cr, style, (left + right) / 2, plot.y - style->text_pt * 0.2, 0.5, 1, style->faint, label);
+    tf_chart_text (cr, style, (left + right) / 2, plot.y - style->text_pt * 0.2, 0.5, 1,
+                   style->faint, label);
 }
 
 void
@@ -209,7 +216,8 @@ draw_divide_band (cairo_t *cr, const TfChartStyle *style, const DividePoint *poi
 }
 
 static void
-draw_divide_handles (cairo_t *cr, const TfChartStyle *style, const DividePoint *points, guint n, double radius)
+draw_divide_handles (cairo_t *cr, const TfChartStyle *style, const DividePoint *points, guint n,
+                     double radius)
 {
   for (int end = 0; end < 2; end++)
     {
@@ -224,7 +232,8 @@ draw_divide_handles (cairo_t *cr, const TfChartStyle *style, const DividePoint *
 }
 
 static void
-draw_divide (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, int cycle, int hemisphere)
+draw_divide (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, int cycle,
+             int hemisphere)
 {
   const TfDivideParams *params = tf_divides_get_params (wings->divides);
   double minimum = tf_time_year (tf_cycle_minimum (cycle));
@@ -234,12 +243,15 @@ draw_divide (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfAre
   g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (DividePoint));
   for (int month = -params->before_months; month <= params->after_months; month++)
     {
-      double year = minimum + month * 0.999 / 12.0; /* the ends themselves may lie a breath outside */
-      double lat = tf_divides_latitude (wings->divides, cycle, hemisphere, tf_time_from_year (year));
-      DividePoint point = { .x = tf_wings_x (wings, plot, year),
-                            .high = tf_wings_y (wings, plot, hemisphere * (lat + params->band_deg)),
-                            .middle = tf_wings_y (wings, plot, hemisphere * lat),
-                            .low = tf_wings_y (wings, plot, hemisphere * (lat - params->band_deg)) };
+      double year
+          = minimum + month * 0.999 / 12.0; /* the ends themselves may lie a breath outside */
+      double lat
+          = tf_divides_latitude (wings->divides, cycle, hemisphere, tf_time_from_year (year));
+      DividePoint point
+          = { .x = tf_wings_x (wings, plot, year),
+              .high = tf_wings_y (wings, plot, hemisphere * (lat + params->band_deg)),
+              .middle = tf_wings_y (wings, plot, hemisphere * lat),
+              .low = tf_wings_y (wings, plot, hemisphere * (lat - params->band_deg)) };
       if (isfinite (lat))
         g_array_append_val (points, point);
     }

@@ -11,14 +11,15 @@
 #include "tf-verdict.h"
 
 #define HIT_UNITS 8.0
-#define MONTH (1.0 / 12)
+#define MONTH     (1.0 / 12)
 /* A view is a density picture when it has less than so many square units for each dot. */
 #define UNITS_A_DOT 36.0
 
 TfArea
 tf_wings_plot (const TfWings *wings, const TfChartStyle *style, TfArea area)
 {
-  double text = style->text_pt, left = text * 3.4, right = text * 0.9, above = text * 1.6, below = text * 1.8;
+  double text = style->text_pt, left = text * 3.4, right = text * 0.9, above = text * 1.6,
+         below = text * 1.8;
   return (TfArea){ area.x + left, area.y + above, MAX (area.width - left - right, 1),
                    MAX (area.height - above - below, 1) };
 }
@@ -94,7 +95,7 @@ tf_wings_radius (float flux_mx)
 {
   if (!(flux_mx > 0))
     return 1.8;
-  return CLAMP (1.4 + 1.9 * sqrt ((double) flux_mx / 1e22), 1.6, 7.0);
+  return CLAMP (1.4 + 1.9 * sqrt ((double)flux_mx / 1e22), 1.6, 7.0);
 }
 
 gboolean
@@ -114,7 +115,8 @@ tf_wings_hit (const TfWings *wings, const TfChartStyle *style, TfArea area, doub
   double year = tf_wings_year_at (wings, style, area, x);
   double best = HIT_UNITS * HIT_UNITS;
   int found = -1;
-  for (guint k = tf_wings_first (wings, year - reach); k < wings->n && wings->dots[k].year <= year + reach; k++)
+  for (guint k = tf_wings_first (wings, year - reach);
+       k < wings->n && wings->dots[k].year <= year + reach; k++)
     {
       double dx = tf_wings_x (wings, plot, wings->dots[k].year) - x;
       double dy = tf_wings_y (wings, plot, wings->dots[k].lat_deg) - y;
@@ -122,7 +124,7 @@ tf_wings_hit (const TfWings *wings, const TfChartStyle *style, TfArea area, doub
       if (far <= best)
         {
           best = far;
-          found = (int) k;
+          found = (int)k;
         }
     }
   return found;
@@ -217,8 +219,10 @@ tf_wings_dup_description (const TfWings *wings)
   else
     {
       Count c = count (wings);
-      append_count (text, c.marks, g_dngettext (GETTEXT_PACKAGE, "{0} mark,", "{0} marks,", c.marks));
-      append_count (text, c.hints, g_dngettext (GETTEXT_PACKAGE, "{0} hint;", "{0} hints;", c.hints));
+      append_count (text, c.marks,
+                    g_dngettext (GETTEXT_PACKAGE, "{0} mark,", "{0} marks,", c.marks));
+      append_count (text, c.hints,
+                    g_dngettext (GETTEXT_PACKAGE, "{0} hint;", "{0} hints;", c.hints));
       append_count (text, c.seen, _ ("{0} in view."));
       if (!wings->plain)
         {

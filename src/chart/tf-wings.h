@@ -3,9 +3,10 @@
  */
 #pragma once
 
-/* The wings: the butterfly strip. Time along, latitude up, one mark a dot (size = flux, disc or ring = leading polarity, struck
- * diamond = breaks Hale's law; hints fainter). Cycles banded and named, divides drawn, a line at the frame in view, the chosen stretch shaded.
- * A density picture when there are more dots than pixels can tell apart.
+/* The wings: the butterfly strip. Time along, latitude up, one mark a dot (size = flux, disc or
+ * ring = leading polarity, struck diamond = breaks Hale's law; hints fainter). Cycles banded and
+ * named, divides drawn, a line at the frame in view, the chosen stretch shaded. A density picture
+ * when there are more dots than pixels can tell apart.
  */
 
 #include "tf-chart.h"
@@ -17,28 +18,29 @@ typedef struct
 {
   double year;
   float lat_deg, flux_mx;
-  gint8 leading;  /* 1, -1, 0 */
-  gint8 verdict;  /* TfVerdictKind */
+  gint8 leading; /* 1, -1, 0 */
+  gint8 verdict; /* TfVerdictKind */
   gint8 hint;
-  gint64 id;      /* the caller's */
+  gint64 id; /* the caller's */
 } TfWingsDot;
 
 typedef struct
 {
   const TfWingsDot *dots;
-  guint n;                      /* sorted by year */
-  double from_year, to_year;    /* view */
-  double lat_max_deg;           /* 45 */
-  double frame_year;            /* NaN none */
-  gint64 chosen;                /* id of the chosen dot; 0 none */
-  double pick_from, pick_to;    /* the chosen stretch of years; NaN none */
-  double pick_low, pick_high;   /* and band of latitude; NaN all */
-  const TfDivides *divides;     /* nullable */
-  gboolean plain;               /* a divide is in hand: dots plain, verdicts hidden */
+  guint n;                    /* sorted by year */
+  double from_year, to_year;  /* view */
+  double lat_max_deg;         /* 45 */
+  double frame_year;          /* NaN none */
+  gint64 chosen;              /* id of the chosen dot; 0 none */
+  double pick_from, pick_to;  /* the chosen stretch of years; NaN none */
+  double pick_low, pick_high; /* and band of latitude; NaN all */
+  const TfDivides *divides;   /* nullable */
+  gboolean plain;             /* a divide is in hand: dots plain, verdicts hidden */
 } TfWings;
 
 void tf_wings_draw (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area);
-/** tf_wings_plot: where the dots are: @area less the labels, whose room depends on the text size of @style. */
+/** tf_wings_plot: where the dots are: @area less the labels, whose room depends on the text size of
+ * @style. */
 TfArea tf_wings_plot (const TfWings *wings, const TfChartStyle *style, TfArea area);
 /** tf_wings_hit: index of the nearest dot within 8 units of the point, or -1. */
 int tf_wings_hit (const TfWings *wings, const TfChartStyle *style, TfArea area, double x, double y);
@@ -49,7 +51,8 @@ double tf_wings_x_of (const TfWings *wings, const TfChartStyle *style, TfArea ar
 double tf_wings_y_of (const TfWings *wings, const TfChartStyle *style, TfArea area, double lat_deg);
 /** tf_wings_is_dense: whether the view is drawn as a density picture. */
 gboolean tf_wings_is_dense (const TfWings *wings, const TfChartStyle *style, TfArea area);
-/** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year when there are none. */
+/** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year
+ * when there are none. */
 void tf_wings_fit (TfWings *wings, double year);
 char *tf_wings_dup_description (const TfWings *wings);
 

@@ -30,7 +30,8 @@ picture_at (const Picture *picture, int x, int y)
   g_assert_true (x >= 0 && x < picture->width && y >= 0 && y < picture->height);
   cairo_surface_flush (picture->surface);
   int stride = cairo_image_surface_get_stride (picture->surface) / 4;
-  guint32 pixel = ((const guint32 *) (const void *) cairo_image_surface_get_data (picture->surface))[y * stride + x];
+  guint32 pixel = ((const guint32 *)(const void *)cairo_image_surface_get_data (
+      picture->surface))[y * stride + x];
   return (TfColour){ (pixel >> 16 & 255) / 255.0, (pixel >> 8 & 255) / 255.0, (pixel & 255) / 255.0,
                      (pixel >> 24) / 255.0 };
 }
@@ -42,7 +43,8 @@ colour_distance (TfColour a, TfColour b)
 }
 
 guint
-picture_count_in (const Picture *picture, TfColour colour, double tolerance, int x0, int y0, int x1, int y1)
+picture_count_in (const Picture *picture, TfColour colour, double tolerance, int x0, int y0, int x1,
+                  int y1)
 {
   guint n = 0;
   for (int y = MAX (y0, 0); y < MIN (y1, picture->height); y++)
@@ -60,7 +62,7 @@ picture_count (const Picture *picture, TfColour colour, double tolerance)
 guint
 picture_changed (const Picture *picture, TfColour ground)
 {
-  return (guint) (picture->width * picture->height) - picture_count (picture, ground, 0.01);
+  return (guint)(picture->width * picture->height) - picture_count (picture, ground, 0.01);
 }
 
 int

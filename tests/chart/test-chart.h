@@ -23,7 +23,8 @@ double colour_distance (TfColour a, TfColour b);
 /** picture_count: pixels within @tolerance of @colour. */
 guint picture_count (const Picture *picture, TfColour colour, double tolerance);
 /** picture_count_in: the same within a box. */
-guint picture_count_in (const Picture *picture, TfColour colour, double tolerance, int x0, int y0, int x1, int y1);
+guint picture_count_in (const Picture *picture, TfColour colour, double tolerance, int x0, int y0,
+                        int x1, int y1);
 /** picture_changed: pixels of the picture that are not @ground. */
 guint picture_changed (const Picture *picture, TfColour ground);
 

@@ -23,7 +23,8 @@ plain_dial (double bearing)
                    .witnesses = { 2, 2, 2 } };
 }
 
-/* Direction of the pixels of a colour, from west towards north, deg: the axial mean about the middle of the picture. */
+/* Direction of the pixels of a colour, from west towards north, deg: the axial mean about the
+ * middle of the picture. */
 static double
 bearing_of (const Picture *picture, TfColour colour, double x0, double y0)
 {
@@ -32,7 +33,8 @@ bearing_of (const Picture *picture, TfColour colour, double x0, double y0)
     for (int x = 0; x < picture->width; x++)
       if (colour_distance (picture_at (picture, x, y), colour) < 0.12)
         {
-          double dx = x + 0.5 - x0, dy = y0 - y - 0.5, angle = atan2 (dy, dx), weight = hypot (dx, dy);
+          double dx = x + 0.5 - x0, dy = y0 - y - 0.5, angle = atan2 (dy, dx),
+                 weight = hypot (dx, dy);
           c += weight * cos (2 * angle);
           s += weight * sin (2 * angle);
         }
@@ -66,14 +68,16 @@ the_leader_stands_in_the_west (void)
       tf_dial_draw (picture.cr, &dial, &style, (TfArea){ 0, 0, 160, 160 });
       guint west = picture_count_in (&picture, style.positive, 0.05, 80, 0, 160, 160);
       guint east = picture_count_in (&picture, style.positive, 0.05, 0, 0, 80, 160);
-      guint ring = picture_count_in (&picture, style.negative, 0.05, leader > 0 ? 0 : 80, 0, leader > 0 ? 80 : 160, 160);
+      guint ring = picture_count_in (&picture, style.negative, 0.05, leader > 0 ? 0 : 80, 0,
+                                     leader > 0 ? 80 : 160, 160);
       g_assert_cmpuint (leader > 0 ? west : east, >, 60);
       g_assert_cmpuint (leader > 0 ? east : west, ==, 0);
       g_assert_cmpuint (ring, >, 20);
     }
 }
 
-/* Joy's law: the leader nearer the equator, so to the south of west in the north and to the north of it in the south. */
+/* Joy's law: the leader nearer the equator, so to the south of west in the north and to the north
+ * of it in the south. */
 static void
 the_fan_opens_towards_the_equator (void)
 {
@@ -111,8 +115,9 @@ the_uncertainty_is_a_darker_fan (void)
   tf_dial_draw (picture.cr, &dial, &style, (TfArea){ 0, 0, 160, 160 });
   after = picture_changed (&picture, style.ground);
   /* two wedges of 30 deg in a circle of radius 75: 2945 square pixels */
-  tf_check_between ("pixels of the fan", (double) after - before, 2000, 3000);
-  tf_check_between ("dark", colour_distance (picture_at (&picture, 120, 86), style.ground), 0.2, 0.6);
+  tf_check_between ("pixels of the fan", (double)after - before, 2000, 3000);
+  tf_check_between ("dark", colour_distance (picture_at (&picture, 120, 86), style.ground), 0.2,
+                    0.6);
 }
 
 static void
@@ -131,13 +136,14 @@ an_empty_dial_has_a_circle_alone (void)
 static void
 nothing_is_cut_off (void)
 {
-  static const double sizes[][2] = { { 300, 190 }, { 200, 230 }, { 160, 160 }, { 48, 48 }, { 20, 20 }, { 340, 340 } };
+  static const double sizes[][2]
+      = { { 300, 190 }, { 200, 230 }, { 160, 160 }, { 48, 48 }, { 20, 20 }, { 340, 340 } };
   static const double texts[] = { 9, 11, 14, 22 };
   for (guint k = 0; k < G_N_ELEMENTS (sizes); k++)
     for (guint t = 0; t < G_N_ELEMENTS (texts); t++)
       {
         TfChartStyle style = tf_chart_style (FALSE, FALSE, texts[t]);
-        int w = (int) sizes[k][0], h = (int) sizes[k][1];
+        int w = (int)sizes[k][0], h = (int)sizes[k][1];
         g_auto (Picture) picture = picture_new (w, h, style.ground);
         TfDial dial = { -24, 4, -17, 9, 11, "S & K 2012", -1, 1, { 1, -1, 0 } };
         tf_dial_draw (picture.cr, &dial, &style, (TfArea){ 0, 0, w, h });
@@ -145,7 +151,7 @@ nothing_is_cut_off (void)
                      + picture_count_in (&picture, style.ground, 0.02, 0, h - 1, w, h)
                      + picture_count_in (&picture, style.ground, 0.02, 0, 0, 1, h)
                      + picture_count_in (&picture, style.ground, 0.02, w - 1, 0, w, h);
-        if (edge != (guint) (2 * w + 2 * h))
+        if (edge != (guint)(2 * w + 2 * h))
           g_printerr ("# %d x %d, text %g: something touches the edge\n", w, h, texts[t]);
         g_assert_cmpuint (edge, ==, 2 * w + 2 * h);
       }
@@ -166,8 +172,9 @@ svg_and_pdf_take_the_same_drawing (void)
   for (int pdf = 0; pdf < 2; pdf++)
     {
       g_autoptr (GByteArray) bytes = g_byte_array_new ();
-      cairo_surface_t *surface = pdf ? cairo_pdf_surface_create_for_stream (swallow, bytes, 300, 190)
-                                     : cairo_svg_surface_create_for_stream (swallow, bytes, 300, 190);
+      cairo_surface_t *surface
+          = pdf ? cairo_pdf_surface_create_for_stream (swallow, bytes, 300, 190)
+                : cairo_svg_surface_create_for_stream (swallow, bytes, 300, 190);
       cairo_t *cr = cairo_create (surface);
       tf_dial_draw (cr, &dial, &style, (TfArea){ 0, 0, 300, 190 });
       g_assert_cmpint (cairo_status (cr), ==, CAIRO_STATUS_SUCCESS);
@@ -186,13 +193,16 @@ the_description_says_what_is_shown (void)
   TfDial dial = { -24.1, 4.2, -17, 9, 11, "S & K 2012", -1, 1, { -1, 0, 2 } };
   g_autofree char *text = tf_dial_dup_description (&dial);
   g_assert_cmpstr (text, ==,
-                   "Axis at −24° ± 4° from west towards north. Leading polarity negative. Hale’s law expects positive "
-                   "to lead. Joy’s law (S & K 2012) expects a tilt of +9° ± 11°. Witnesses: negative, undecided, absent.");
+                   "Axis at −24° ± 4° from west towards north. Leading polarity negative. Hale’s "
+                   "law expects positive "
+                   "to lead. Joy’s law (S & K 2012) expects a tilt of +9° ± 11°. Witnesses: "
+                   "negative, undecided, absent.");
   TfDial empty = plain_dial (NAN);
   empty.leading_polarity = 0;
   g_autofree char *none = tf_dial_dup_description (&empty);
   g_assert_cmpstr (none, ==,
-                   "No axis. Leading polarity unknown. What Hale’s law expects is unknown. Witnesses: absent, absent, "
+                   "No axis. Leading polarity unknown. What Hale’s law expects is unknown. "
+                   "Witnesses: absent, absent, "
                    "absent.");
 }
 
@@ -201,10 +211,14 @@ add_dial_tests (void)
 {
   g_test_add_func ("/chart/dial/the-bar-lies-at-its-bearing", the_bar_lies_at_its_bearing);
   g_test_add_func ("/chart/dial/the-leader-stands-in-the-west", the_leader_stands_in_the_west);
-  g_test_add_func ("/chart/dial/the-fan-opens-towards-the-equator", the_fan_opens_towards_the_equator);
+  g_test_add_func ("/chart/dial/the-fan-opens-towards-the-equator",
+                   the_fan_opens_towards_the_equator);
   g_test_add_func ("/chart/dial/the-uncertainty-is-a-darker-fan", the_uncertainty_is_a_darker_fan);
-  g_test_add_func ("/chart/dial/an-empty-dial-has-a-circle-alone", an_empty_dial_has_a_circle_alone);
+  g_test_add_func ("/chart/dial/an-empty-dial-has-a-circle-alone",
+                   an_empty_dial_has_a_circle_alone);
   g_test_add_func ("/chart/dial/nothing-is-cut-off-at-any-size", nothing_is_cut_off);
-  g_test_add_func ("/chart/dial/svg-and-pdf-take-the-same-drawing", svg_and_pdf_take_the_same_drawing);
-  g_test_add_func ("/chart/dial/the-description-says-what-is-shown", the_description_says_what_is_shown);
+  g_test_add_func ("/chart/dial/svg-and-pdf-take-the-same-drawing",
+                   svg_and_pdf_take_the_same_drawing);
+  g_test_add_func ("/chart/dial/the-description-says-what-is-shown",
+                   the_description_says_what_is_shown);
 }

@@ -34,16 +34,28 @@ on_map (double lon_deg, double lat_deg, double *x, double *y, gpointer data)
 static TfOverlay
 overlay_of (TfProjectFunc project, const TfOverlayItem *items, guint n)
 {
-  return (TfOverlay){ .project = project, .central_carrington_deg = project == on_disk ? 100 : NAN, .step_deg = 10,
-                      .outlines = TRUE, .axes = TRUE, .labels = TRUE, .items = items, .n_items = n,
-                      .limb_x = SIDE / 2, .limb_y = SIDE / 2, .limb_rx = NAN, .limb_ry = NAN };
+  return (TfOverlay){ .project = project,
+                      .central_carrington_deg = project == on_disk ? 100 : NAN,
+                      .step_deg = 10,
+                      .outlines = TRUE,
+                      .axes = TRUE,
+                      .labels = TRUE,
+                      .items = items,
+                      .n_items = n,
+                      .limb_x = SIDE / 2,
+                      .limb_y = SIDE / 2,
+                      .limb_rx = NAN,
+                      .limb_ry = NAN };
 }
 
 static TfOverlayItem
 item_of (const TfOutline *outline)
 {
-  return (TfOverlayItem){ .outline = outline, .stroke = TF_STROKE_MARK, .positive = { NAN, NAN },
-                          .negative = { NAN, NAN }, .verdict = -1 };
+  return (TfOverlayItem){ .outline = outline,
+                          .stroke = TF_STROKE_MARK,
+                          .positive = { NAN, NAN },
+                          .negative = { NAN, NAN },
+                          .verdict = -1 };
 }
 
 static TfOutline *
@@ -57,7 +69,7 @@ static const TfColour paper = { 1, 1, 1, 1 };
 static guint
 inked_in (const Picture *picture, int x0, int y0, int x1, int y1)
 {
-  guint all = (guint) ((MIN (x1, SIDE) - MAX (x0, 0)) * (MIN (y1, SIDE) - MAX (y0, 0)));
+  guint all = (guint)((MIN (x1, SIDE) - MAX (x0, 0)) * (MIN (y1, SIDE) - MAX (y0, 0)));
   return all - picture_count_in (picture, paper, 0.12, x0, y0, x1, y1);
 }
 
@@ -80,7 +92,8 @@ an_outline_is_where_the_projection_puts_it (void)
   double radius = 180 * sin (20 * G_PI / 180);
   for (int k = 0; k < 24; k++)
     {
-      int x = (int) (200 + radius * cos (k * 15 * G_PI / 180)), y = (int) (200 + radius * sin (k * 15 * G_PI / 180));
+      int x = (int)(200 + radius * cos (k * 15 * G_PI / 180)),
+          y = (int)(200 + radius * sin (k * 15 * G_PI / 180));
       g_assert_cmpuint (inked_in (&picture, x - 2, y - 2, x + 3, y + 3), >=, 3);
     }
   g_assert_cmpuint (inked_in (&picture, 160, 160, 240, 240), ==, 0);
@@ -111,19 +124,21 @@ hints_are_dashed_and_the_chosen_is_thick (void)
 static void
 edges_are_great_circles (void)
 {
-  /* an edge along 40 N over 80 deg of longitude: the great circle rises to atan (tan 40 / cos 40) = 47.6 N */
+  /* an edge along 40 N over 80 deg of longitude: the great circle rises to atan (tan 40 / cos 40) =
+   * 47.6 N */
   static const TfVertex ring[] = { { 60, 40 }, { 140, 40 }, { 100, 10 } };
   g_autoptr (TfOutline) outline = tf_outline_new (TF_TIME_UNKNOWN, ring, 3, NULL);
   TfOverlayItem item = item_of (outline);
   TfOverlay overlay = overlay_of (on_disk, &item, 1);
   g_auto (Picture) picture = drawn (&overlay);
   double peak = atan (tan (40 * G_PI / 180) / cos (40 * G_PI / 180));
-  int y = (int) (200 - 180 * sin (peak)), straight = (int) (200 - 180 * sin (40 * G_PI / 180));
+  int y = (int)(200 - 180 * sin (peak)), straight = (int)(200 - 180 * sin (40 * G_PI / 180));
   g_assert_cmpuint (inked_in (&picture, 199, y - 2, 202, y + 3), >=, 3);
   g_assert_cmpuint (inked_in (&picture, 199, straight - 2, 202, straight + 3), ==, 0);
 }
 
-/* Behind the limb nothing is drawn, and no chord joins the two places where the outline goes over it. */
+/* Behind the limb nothing is drawn, and no chord joins the two places where the outline goes over
+ * it. */
 static void
 an_outline_ends_at_the_limb (void)
 {
@@ -131,12 +146,12 @@ an_outline_ends_at_the_limb (void)
   TfOverlayItem item = item_of (outline);
   TfOverlay overlay = overlay_of (on_disk, &item, 1);
   g_auto (Picture) picture = drawn (&overlay);
-  int chord = (int) (200 + 180 * cos (30 * G_PI / 180)); /* x of the whole outline as seen edge on */
+  int chord = (int)(200 + 180 * cos (30 * G_PI / 180)); /* x of the whole outline as seen edge on */
   g_assert_cmpuint (inked_in (&picture, 382, 0, SIDE, SIDE), ==, 0);
   g_assert_cmpuint (inked_in (&picture, chord + 4, 125, 379, 275), ==, 0);
   g_assert_cmpuint (inked_in (&picture, chord - 2, 199, chord + 3, 202), >=, 3);
   /* it reaches the limb: (cos 30, sin 30) of the radius */
-  int x = 200 + (int) (180 * cos (30 * G_PI / 180)), y = 200 - (int) (180 * 0.5);
+  int x = 200 + (int)(180 * cos (30 * G_PI / 180)), y = 200 - (int)(180 * 0.5);
   g_assert_cmpuint (inked_in (&picture, x - 3, y - 3, x + 4, y + 4), >=, 3);
 }
 
@@ -185,9 +200,11 @@ a_hit_is_what_the_outline_encloses (void)
   g_assert_cmpint (tf_overlay_hit (&overlay, area, x, y), ==, 0);
   g_assert_cmpint (tf_overlay_hit (&overlay, area, 20, 20), ==, -1);
   GRand *random = g_rand_new_with_seed (7);
-  for (int k = 0; k < 400; k++) /* the pixel test agrees with the sphere, away from the line itself */
+  for (int k = 0; k < 400;
+       k++) /* the pixel test agrees with the sphere, away from the line itself */
     {
-      double lon = g_rand_double_range (random, 60, 140), lat = g_rand_double_range (random, -40, 40);
+      double lon = g_rand_double_range (random, 60, 140),
+             lat = g_rand_double_range (random, -40, 40);
       double far = acos (cos (lat * G_PI / 180) * cos ((lon - 100) * G_PI / 180)) * 180 / G_PI;
       TfOverlay one = overlay_of (on_disk, items, 1);
       on_disk (lon, lat, &x, &y, NULL);
@@ -232,9 +249,11 @@ poles_are_a_disc_and_a_ring (void)
   g_auto (Picture) picture = drawn (&overlay);
   double x, y;
   on_disk (120, 0, &x, &y, NULL);
-  tf_check_near ("disc", colour_distance (picture_at (&picture, (int) x, (int) y), style.positive), 0, 0.05);
+  tf_check_near ("disc", colour_distance (picture_at (&picture, (int)x, (int)y), style.positive), 0,
+                 0.05);
   on_disk (80, 0, &x, &y, NULL);
-  g_assert_cmpuint (picture_count_in (&picture, style.negative, 0.1, (int) x - 6, 194, (int) x + 7, 207), >=, 8);
+  g_assert_cmpuint (
+      picture_count_in (&picture, style.negative, 0.1, (int)x - 6, 194, (int)x + 7, 207), >=, 8);
   g_assert_cmpuint (inked_in (&picture, 195, 198, 205, 203), >=, 10); /* the axis between them */
 }
 
@@ -295,7 +314,7 @@ lines_show_on_every_grey (void)
 static guint
 lined_in (const Picture *picture, int x0, int y0, int x1, int y1)
 {
-  return (guint) ((x1 - x0) * (y1 - y0)) - picture_count_in (picture, paper, 0.03, x0, y0, x1, y1);
+  return (guint)((x1 - x0) * (y1 - y0)) - picture_count_in (picture, paper, 0.03, x0, y0, x1, y1);
 }
 
 static void
@@ -306,12 +325,13 @@ the_graticule_has_its_lines (void)
   g_auto (Picture) picture = drawn (&overlay);
   for (int lat = -80; lat <= 80; lat += 10)
     {
-      int y = (int) (200 - 180 * sin (lat * G_PI / 180));
-      g_assert_cmpuint (lined_in (&picture, 203, y - 1, 204, y + 2), >=, 1); /* just beside the meridian */
+      int y = (int)(200 - 180 * sin (lat * G_PI / 180));
+      g_assert_cmpuint (lined_in (&picture, 203, y - 1, 204, y + 2), >=,
+                        1); /* just beside the meridian */
     }
   for (int cmd = -80; cmd <= 80; cmd += 10)
     {
-      int x = (int) (200 + 180 * sin (cmd * G_PI / 180));
+      int x = (int)(200 + 180 * sin (cmd * G_PI / 180));
       g_assert_cmpuint (lined_in (&picture, x - 1, 190, x + 2, 191), >=, 1);
     }
   g_assert_cmpuint (lined_in (&picture, 0, 0, 15, SIDE), ==, 0);
@@ -334,7 +354,7 @@ empty_and_broken_input_does_no_harm (void)
   overlay.limb_turn = NAN;
   g_auto (Picture) picture = drawn (&overlay);
   g_assert_cmpint (cairo_status (picture.cr), ==, CAIRO_STATUS_SUCCESS);
-  g_assert_cmpuint (inked_in (&picture, 20, 8, 30, 13), >=, 10);   /* the draft */
+  g_assert_cmpuint (inked_in (&picture, 20, 8, 30, 13), >=, 10);     /* the draft */
   g_assert_cmpuint (inked_in (&picture, 378, 199, 383, 200), >=, 1); /* the limb */
   TfOverlay none = overlay_of (on_disk, NULL, 0);
   g_auto (Picture) empty = drawn (&none);
@@ -347,16 +367,23 @@ add_overlay_tests (void)
 {
   g_test_add_func ("/chart/overlay/an-outline-is-where-the-projection-puts-it",
                    an_outline_is_where_the_projection_puts_it);
-  g_test_add_func ("/chart/overlay/hints-are-dashed-and-the-chosen-is-thick", hints_are_dashed_and_the_chosen_is_thick);
+  g_test_add_func ("/chart/overlay/hints-are-dashed-and-the-chosen-is-thick",
+                   hints_are_dashed_and_the_chosen_is_thick);
   g_test_add_func ("/chart/overlay/edges-are-great-circles", edges_are_great_circles);
   g_test_add_func ("/chart/overlay/an-outline-ends-at-the-limb", an_outline_ends_at_the_limb);
-  g_test_add_func ("/chart/overlay/what-is-behind-the-sun-is-not-drawn", what_is_behind_the_sun_is_not_drawn);
-  g_test_add_func ("/chart/overlay/no-line-runs-across-the-map-at-its-seam", no_line_runs_across_the_map_at_its_seam);
-  g_test_add_func ("/chart/overlay/a-hit-is-what-the-outline-encloses", a_hit_is_what_the_outline_encloses);
-  g_test_add_func ("/chart/overlay/holes-and-left-out-areas-are-not-hit", holes_and_left_out_areas_are_not_hit);
+  g_test_add_func ("/chart/overlay/what-is-behind-the-sun-is-not-drawn",
+                   what_is_behind_the_sun_is_not_drawn);
+  g_test_add_func ("/chart/overlay/no-line-runs-across-the-map-at-its-seam",
+                   no_line_runs_across_the_map_at_its_seam);
+  g_test_add_func ("/chart/overlay/a-hit-is-what-the-outline-encloses",
+                   a_hit_is_what_the_outline_encloses);
+  g_test_add_func ("/chart/overlay/holes-and-left-out-areas-are-not-hit",
+                   holes_and_left_out_areas_are_not_hit);
   g_test_add_func ("/chart/overlay/poles-are-a-disc-and-a-ring", poles_are_a_disc_and_a_ring);
-  g_test_add_func ("/chart/overlay/a-label-stands-clear-of-the-outlines", a_label_stands_clear_of_the_outlines);
+  g_test_add_func ("/chart/overlay/a-label-stands-clear-of-the-outlines",
+                   a_label_stands_clear_of_the_outlines);
   g_test_add_func ("/chart/overlay/lines-show-on-every-grey", lines_show_on_every_grey);
   g_test_add_func ("/chart/overlay/the-graticule-has-its-lines", the_graticule_has_its_lines);
-  g_test_add_func ("/chart/overlay/empty-and-broken-input-does-no-harm", empty_and_broken_input_does_no_harm);
+  g_test_add_func ("/chart/overlay/empty-and-broken-input-does-no-harm",
+                   empty_and_broken_input_does_no_harm);
 }

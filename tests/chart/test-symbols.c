@@ -7,7 +7,8 @@
 
 #include "tf-check.h"
 
-/* Relative luminance and contrast ratio: WCAG 2.1, "relative luminance" and "contrast ratio" (W3C Recommendation 2018). */
+/* Relative luminance and contrast ratio: WCAG 2.1, "relative luminance" and "contrast ratio" (W3C
+ * Recommendation 2018). */
 static double
 channel (double c)
 {
@@ -30,9 +31,11 @@ contrast (TfColour a, TfColour b)
 static void
 the_ratio_is_that_of_the_standard (void)
 {
-  TfColour black = { 0, 0, 0, 1 }, white = { 1, 1, 1, 1 }, grey = { 119 / 255.0, 119 / 255.0, 119 / 255.0, 1 };
+  TfColour black = { 0, 0, 0, 1 }, white = { 1, 1, 1, 1 },
+           grey = { 119 / 255.0, 119 / 255.0, 119 / 255.0, 1 };
   tf_check_near ("black on white", contrast (black, white), 21, 1e-9);
-  tf_check_near ("#777 on white", contrast (grey, white), 4.48, 0.005); /* widely printed; from memory */
+  tf_check_near ("#777 on white", contrast (grey, white), 4.48,
+                 0.005); /* widely printed; from memory */
 }
 
 static void
@@ -88,10 +91,14 @@ a_disc_is_filled_and_a_ring_is_hollow (void)
       g_auto (Picture) picture = picture_new (80, 40, style.ground);
       tf_chart_pole (picture.cr, &style, 20.5, 20.5, 8, 1);
       tf_chart_pole (picture.cr, &style, 60.5, 20.5, 8, -1);
-      tf_check_near ("middle of the disc", colour_distance (picture_at (&picture, 20, 20), style.positive), 0, 0.01);
-      tf_check_near ("middle of the ring", colour_distance (picture_at (&picture, 60, 20), style.ground), 0, 0.01);
-      tf_check_near ("on the ring", colour_distance (picture_at (&picture, 67, 20), style.negative), 0, 0.05);
-      tf_check_near ("outside", colour_distance (picture_at (&picture, 70, 20), style.ground), 0, 0.01);
+      tf_check_near ("middle of the disc",
+                     colour_distance (picture_at (&picture, 20, 20), style.positive), 0, 0.01);
+      tf_check_near ("middle of the ring",
+                     colour_distance (picture_at (&picture, 60, 20), style.ground), 0, 0.01);
+      tf_check_near ("on the ring", colour_distance (picture_at (&picture, 67, 20), style.negative),
+                     0, 0.05);
+      tf_check_near ("outside", colour_distance (picture_at (&picture, 70, 20), style.ground), 0,
+                     0.01);
     }
 }
 
@@ -116,7 +123,8 @@ only_the_struck_diamond_is_red (void)
   tf_chart_diamond (picture.cr, &style, 100, 20, 10, TF_DIAMOND_STRUCK);
   g_assert_cmpuint (picture_count_in (&picture, style.breaks, 0.05, 0, 0, 80, 40), ==, 0);
   g_assert_cmpuint (picture_count_in (&picture, style.breaks, 0.05, 80, 0, 120, 40), >, 60);
-  g_assert_cmpuint (picture_count_in (&picture, style.ink, 0.1, 80, 0, 120, 40), >, 10); /* the stroke */
+  g_assert_cmpuint (picture_count_in (&picture, style.ink, 0.1, 80, 0, 120, 40), >,
+                    10); /* the stroke */
   tf_check_near ("hollow", colour_distance (picture_at (&picture, 20, 20), style.ground), 0, 0.01);
   tf_check_near ("plain", colour_distance (picture_at (&picture, 60, 20), style.slate), 0, 0.01);
 }
@@ -131,7 +139,8 @@ text_is_aligned (void)
   g_assert_cmpuint (picture_count_in (&picture, style.ground, 0.01, 102, 0, 200, 40), ==, 98 * 40);
   g_assert_cmpuint (picture_count_in (&picture, style.ink, 0.3, 0, 0, 102, 40), >, 20);
   tf_check_near ("no text", tf_chart_text (picture.cr, &style, 0, 0, 0, 0, style.ink, ""), 0, 0);
-  tf_check_near ("NaN place", tf_chart_text (picture.cr, &style, NAN, 0, 0, 0, style.ink, "a"), 0, 0);
+  tf_check_near ("NaN place", tf_chart_text (picture.cr, &style, NAN, 0, 0, 0, style.ink, "a"), 0,
+                 0);
 }
 
 static void
@@ -157,12 +166,16 @@ places_and_fluxes_in_words (void)
 void
 add_symbol_tests (void)
 {
-  g_test_add_func ("/chart/style/contrast-is-measured-as-in-the-standard", the_ratio_is_that_of_the_standard);
-  g_test_add_func ("/chart/style/text-and-symbols-stand-out-on-every-ground", text_and_symbols_stand_out);
+  g_test_add_func ("/chart/style/contrast-is-measured-as-in-the-standard",
+                   the_ratio_is_that_of_the_standard);
+  g_test_add_func ("/chart/style/text-and-symbols-stand-out-on-every-ground",
+                   text_and_symbols_stand_out);
   g_test_add_func ("/chart/style/a-disc-stands-out-by-its-edge", a_disc_stands_out_by_its_edge);
   g_test_add_func ("/chart/style/the-palette-is-the-projects-own", palette_is_the_projects_own);
-  g_test_add_func ("/chart/symbol/a-disc-is-filled-and-a-ring-is-hollow", a_disc_is_filled_and_a_ring_is_hollow);
-  g_test_add_func ("/chart/symbol/a-pole-without-polarity-is-neither", a_pole_without_polarity_is_neither);
+  g_test_add_func ("/chart/symbol/a-disc-is-filled-and-a-ring-is-hollow",
+                   a_disc_is_filled_and_a_ring_is_hollow);
+  g_test_add_func ("/chart/symbol/a-pole-without-polarity-is-neither",
+                   a_pole_without_polarity_is_neither);
   g_test_add_func ("/chart/symbol/only-the-struck-diamond-is-red", only_the_struck_diamond_is_red);
   g_test_add_func ("/chart/text/is-aligned-and-bears-nothing", text_is_aligned);
   g_test_add_func ("/chart/text/places-and-fluxes-in-words", places_and_fluxes_in_words);

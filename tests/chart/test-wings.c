@@ -12,7 +12,7 @@
 #include "tf-verdict.h"
 #include "tf-wings.h"
 
-#define WIDTH 900
+#define WIDTH  900
 #define HEIGHT 200
 
 static const TfArea area = { 0, 0, WIDTH, HEIGHT };
@@ -20,8 +20,14 @@ static const TfArea area = { 0, 0, WIDTH, HEIGHT };
 static TfWings
 wings_of (const TfWingsDot *dots, guint n)
 {
-  TfWings wings = { .dots = dots, .n = n, .lat_max_deg = 45, .frame_year = NAN, .pick_from = NAN, .pick_to = NAN,
-                    .pick_low = NAN, .pick_high = NAN };
+  TfWings wings = { .dots = dots,
+                    .n = n,
+                    .lat_max_deg = 45,
+                    .frame_year = NAN,
+                    .pick_from = NAN,
+                    .pick_to = NAN,
+                    .pick_low = NAN,
+                    .pick_high = NAN };
   tf_wings_fit (&wings, 2013);
   return wings;
 }
@@ -29,7 +35,7 @@ wings_of (const TfWingsDot *dots, guint n)
 static int
 point (double year_or_lat)
 {
-  return (int) floor (year_or_lat);
+  return (int)floor (year_or_lat);
 }
 
 static void
@@ -47,21 +53,29 @@ hit_and_drawing_agree (void)
   for (int k = 0; k < 3; k++)
     {
       double x = tf_wings_x_of (&wings, &style, area, dots[k].year);
-      double y = tf_wings_y_of (&wings, &style, area, (double) dots[k].lat_deg);
+      double y = tf_wings_y_of (&wings, &style, area, (double)dots[k].lat_deg);
       g_assert_cmpint (tf_wings_hit (&wings, &style, area, x + 3, y - 3), ==, k);
       g_assert_cmpint (tf_wings_hit (&wings, &style, area, x + 7, y - 7), ==, -1);
-      tf_check_near ("year there and back", tf_wings_year_at (&wings, &style, area, x), dots[k].year, 1e-9);
-      tf_check_near ("latitude there and back", tf_wings_lat_at (&wings, &style, area, y), (double) dots[k].lat_deg, 1e-5);
-      g_assert_cmpuint (picture_count_in (&picture, style.ground, 0.15, point (x) - 6, point (y) - 6, point (x) + 7,
-                                          point (y) + 7), <, 13 * 13);
+      tf_check_near ("year there and back", tf_wings_year_at (&wings, &style, area, x),
+                     dots[k].year, 1e-9);
+      tf_check_near ("latitude there and back", tf_wings_lat_at (&wings, &style, area, y),
+                     (double)dots[k].lat_deg, 1e-5);
+      g_assert_cmpuint (picture_count_in (&picture, style.ground, 0.15, point (x) - 6,
+                                          point (y) - 6, point (x) + 7, point (y) + 7),
+                        <, 13 * 13);
     }
-  double x = tf_wings_x_of (&wings, &style, area, 2010), y = tf_wings_y_of (&wings, &style, area, 20);
-  g_assert_cmpuint (picture_count_in (&picture, style.positive, 0.12, point (x) - 4, point (y) - 4, point (x) + 5,
-                                      point (y) + 5), >=, 6);
+  double x = tf_wings_x_of (&wings, &style, area, 2010),
+         y = tf_wings_y_of (&wings, &style, area, 20);
+  g_assert_cmpuint (picture_count_in (&picture, style.positive, 0.12, point (x) - 4, point (y) - 4,
+                                      point (x) + 5, point (y) + 5),
+                    >=, 6);
   x = tf_wings_x_of (&wings, &style, area, 2012), y = tf_wings_y_of (&wings, &style, area, -15);
-  tf_check_between ("a ring is open", colour_distance (picture_at (&picture, point (x), point (y)), style.negative), 0.2, 1);
-  g_assert_cmpuint (picture_count_in (&picture, style.negative, 0.15, point (x) - 6, point (y) - 6, point (x) + 7,
-                                      point (y) + 7), >=, 6);
+  tf_check_between ("a ring is open",
+                    colour_distance (picture_at (&picture, point (x), point (y)), style.negative),
+                    0.2, 1);
+  g_assert_cmpuint (picture_count_in (&picture, style.negative, 0.15, point (x) - 6, point (y) - 6,
+                                      point (x) + 7, point (y) + 7),
+                    >=, 6);
 }
 
 static void
@@ -70,7 +84,7 @@ the_larger_flux_is_the_larger_dot (void)
   guint last = 0;
   for (double flux = 1e21; flux <= 1e23; flux *= 10)
     {
-      TfWingsDot dot = { 2013, 20, (float) flux, 1, TF_VERDICT_KEEPS, 0, 1 };
+      TfWingsDot dot = { 2013, 20, (float)flux, 1, TF_VERDICT_KEEPS, 0, 1 };
       TfChartStyle style = tf_chart_style (TRUE, FALSE, 11);
       TfWings wings = wings_of (&dot, 1);
       g_auto (Picture) picture = picture_new (WIDTH, HEIGHT, style.ground);
@@ -101,15 +115,18 @@ what_breaks_is_red_unless_a_divide_is_in_hand (void)
 static void
 a_hint_is_fainter_than_a_mark (void)
 {
-  TfWingsDot dots[] = { { 2012, 20, 4e22f, 1, TF_VERDICT_KEEPS, 0, 1 }, { 2014, 20, 4e22f, 1, TF_VERDICT_KEEPS, 1, 2 } };
+  TfWingsDot dots[] = { { 2012, 20, 4e22f, 1, TF_VERDICT_KEEPS, 0, 1 },
+                        { 2014, 20, 4e22f, 1, TF_VERDICT_KEEPS, 1, 2 } };
   TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
   TfWings wings = wings_of (dots, 2);
   g_auto (Picture) picture = picture_new (WIDTH, HEIGHT, style.ground);
   tf_wings_draw (picture.cr, &wings, &style, area);
   double far[2];
   for (int k = 0; k < 2; k++)
-    far[k] = colour_distance (picture_at (&picture, point (tf_wings_x_of (&wings, &style, area, dots[k].year)),
-                                          point (tf_wings_y_of (&wings, &style, area, 20))), style.ground);
+    far[k] = colour_distance (
+        picture_at (&picture, point (tf_wings_x_of (&wings, &style, area, dots[k].year)),
+                    point (tf_wings_y_of (&wings, &style, area, 20))),
+        style.ground);
   tf_check_between ("hint against mark", far[1] / far[0], 0.3, 0.75);
 }
 
@@ -127,10 +144,11 @@ the_frame_the_choice_and_the_divide_are_drawn (void)
   g_auto (Picture) before = picture_new (WIDTH, HEIGHT, style.ground);
   tf_wings_draw (before.cr, &wings, &style, area);
   g_assert_cmpuint (picture_count (&before, style.teal, 0.1), >, 400);
-  /* the divide of cycle 24 acts 24 months before to 18 after December 2008: in the middle of it the line is where
-   * tf_divides_latitude says */
+  /* the divide of cycle 24 acts 24 months before to 18 after December 2008: in the middle of it the
+   * line is where tf_divides_latitude says */
   double lat = tf_divides_latitude (divides, 24, 1, tf_time_from_year (2009.5));
-  int x = point (tf_wings_x_of (&wings, &style, area, 2009.5)), y = point (tf_wings_y_of (&wings, &style, area, lat));
+  int x = point (tf_wings_x_of (&wings, &style, area, 2009.5)),
+      y = point (tf_wings_y_of (&wings, &style, area, lat));
   g_assert_cmpuint (picture_count_in (&before, style.teal, 0.25, x, y - 2, x + 1, y + 3), >=, 1);
   wings.frame_year = 2008;
   wings.pick_from = 2010.5;
@@ -140,12 +158,14 @@ the_frame_the_choice_and_the_divide_are_drawn (void)
   TfArea plot = tf_wings_plot (&wings, &style, area);
   x = point (tf_wings_x_of (&wings, &style, area, 2008));
   g_assert_cmpuint (picture_count_in (&after, style.ink, 0.35, x - 1, point (plot.y), x + 2,
-                                      point (plot.y + plot.height)), >, plot.height * 0.9);
+                                      point (plot.y + plot.height)),
+                    >, plot.height * 0.9);
   for (int side = 0; side < 2; side++)
     {
       x = point (tf_wings_x_of (&wings, &style, area, side == 0 ? 2010.5 : 2011));
       g_assert_cmpuint (picture_count_in (&after, style.teal, 0.5, x - 1, point (plot.y), x + 2,
-                                          point (plot.y + plot.height)), >, plot.height * 0.9);
+                                          point (plot.y + plot.height)),
+                        >, plot.height * 0.9);
     }
 }
 
@@ -160,7 +180,8 @@ the_chosen_dot_has_a_ring_of_ink (void)
   wings.chosen = 7;
   g_auto (Picture) after = picture_new (WIDTH, HEIGHT, style.ground);
   tf_wings_draw (after.cr, &wings, &style, area);
-  g_assert_cmpuint (picture_count (&after, style.ink, 0.2), >, picture_count (&before, style.ink, 0.2) + 20);
+  g_assert_cmpuint (picture_count (&after, style.ink, 0.2), >,
+                    picture_count (&before, style.ink, 0.2) + 20);
 }
 
 /* -- many ------------------------------------------------------------------------------------ */
@@ -174,8 +195,13 @@ many (guint n)
     {
       double year = 1998 + 22.0 * k / n;
       gboolean north = g_rand_boolean (random);
-      dots[k] = (TfWingsDot){ .year = year, .lat_deg = (float) ((north ? 1 : -1) * g_rand_double_range (random, 5, 35)),
-                              .flux_mx = 1e22f, .leading = north ? 1 : -1, .verdict = TF_VERDICT_KEEPS, .id = k + 1 };
+      dots[k] = (TfWingsDot){ .year = year,
+                              .lat_deg
+                              = (float)((north ? 1 : -1) * g_rand_double_range (random, 5, 35)),
+                              .flux_mx = 1e22f,
+                              .leading = north ? 1 : -1,
+                              .verdict = TF_VERDICT_KEEPS,
+                              .id = k + 1 };
     }
   g_rand_free (random);
   return dots;
@@ -191,18 +217,23 @@ a_million_dots_are_a_density_picture (void)
   g_assert_true (tf_wings_is_dense (&wings, &style, area));
   gint64 began = g_get_monotonic_time ();
   tf_wings_draw (picture.cr, &wings, &style, area);
-  double ms = (double) (g_get_monotonic_time () - began) / 1000;
+  double ms = (double)(g_get_monotonic_time () - began) / 1000;
   g_test_message ("1000000 dots drawn in %.1f ms", ms);
-  /* the north is amber and filled, the south indigo and hollow: a cell in nine pixels has one that shows the ground */
+  /* the north is amber and filled, the south indigo and hollow: a cell in nine pixels has one that
+   * shows the ground */
   TfArea plot = tf_wings_plot (&wings, &style, area);
-  int middle = point (tf_wings_y_of (&wings, &style, area, 0)), left = point (plot.x) + 60, right = left + 600;
-  int top = point (tf_wings_y_of (&wings, &style, area, 30)), foot = point (tf_wings_y_of (&wings, &style, area, -30));
+  int middle = point (tf_wings_y_of (&wings, &style, area, 0)), left = point (plot.x) + 60,
+      right = left + 600;
+  int top = point (tf_wings_y_of (&wings, &style, area, 30)),
+      foot = point (tf_wings_y_of (&wings, &style, area, -30));
   guint amber = picture_count_in (&picture, style.positive, 0.25, left, top, right, middle - 20);
   guint indigo = picture_count_in (&picture, style.negative, 0.25, left, middle + 20, right, foot);
-  double share_north = amber / (600.0 * (middle - 20 - top)), share_south = indigo / (600.0 * (foot - middle - 20));
+  double share_north = amber / (600.0 * (middle - 20 - top)),
+         share_south = indigo / (600.0 * (foot - middle - 20));
   tf_check_between ("the north is filled", share_north, 0.93, 1);
   tf_check_between ("the south is hollow", share_south, 0.80, 0.92);
-  g_assert_cmpuint (picture_count_in (&picture, style.negative, 0.1, left, top, right, middle - 20), ==, 0);
+  g_assert_cmpuint (picture_count_in (&picture, style.negative, 0.1, left, top, right, middle - 20),
+                    ==, 0);
   int hit = tf_wings_hit (&wings, &style, area, left, top + 5);
   g_assert_cmpint (hit, >=, 0);
 }
@@ -229,7 +260,8 @@ dots_look_alike_on_pixels_and_on_paper (void)
   TfWings wings = wings_of (dots, 400);
   g_auto (Picture) picture = picture_new (WIDTH, HEIGHT, style.ground);
   tf_wings_draw (picture.cr, &wings, &style, area);
-  guint amber = picture_count (&picture, style.positive, 0.2), indigo = picture_count (&picture, style.negative, 0.35);
+  guint amber = picture_count (&picture, style.positive, 0.2),
+        indigo = picture_count (&picture, style.negative, 0.35);
   cairo_surface_t *page = cairo_pdf_surface_create (NULL, WIDTH, HEIGHT);
   cairo_t *cr = cairo_create (page);
   tf_wings_draw (cr, &wings, &style, area);
@@ -251,14 +283,16 @@ no_dots_say_what_will_stand_here (void)
   tf_wings_draw (picture.cr, &wings, &style, area);
   g_assert_cmpuint (picture_count (&picture, style.faint, 0.2), >, 200);
   g_assert_cmpint (tf_wings_hit (&wings, &style, area, 100, 100), ==, -1);
-  tf_check_between ("a month about the year", wings.to_year - wings.from_year, 1 / 12.0 - 1e-9, 0.2);
+  tf_check_between ("a month about the year", wings.to_year - wings.from_year, 1 / 12.0 - 1e-9,
+                    0.2);
   tf_check_near ("middle", (wings.to_year + wings.from_year) / 2, 2013, 1e-9);
 }
 
 static void
 numbers_that_are_not_there_do_no_harm (void)
 {
-  TfWingsDot dots[] = { { 2012, NAN, NAN, 1, TF_VERDICT_BREAKS, 0, 1 }, { 2013, 10, NAN, 0, 0, 1, 2 } };
+  TfWingsDot dots[]
+      = { { 2012, NAN, NAN, 1, TF_VERDICT_BREAKS, 0, 1 }, { 2013, 10, NAN, 0, 0, 1, 2 } };
   TfChartStyle style = tf_chart_style (TRUE, TRUE, 22);
   TfWings wings = wings_of (dots, 2);
   wings.chosen = 1;
@@ -288,12 +322,14 @@ labels_of_time_never_overlap (void)
         g_auto (Picture) picture = picture_new (WIDTH, HEIGHT, style.ground);
         tf_wings_draw (picture.cr, &wings, &style, area);
         TfArea plot = tf_wings_plot (&wings, &style, area);
-        /* columns of the label row that hold ink; between two labels there must be a gap wider than a letter */
+        /* columns of the label row that hold ink; between two labels there must be a gap wider than
+         * a letter */
         int gap = 0, gaps = 0, labels = 0;
         for (int x = 0; x < WIDTH; x++)
           {
-            gboolean inked = picture_count_in (&picture, style.ground, 0.08, x, point (plot.y + plot.height) + 5, x + 1,
-                                               HEIGHT) < (guint) (HEIGHT - point (plot.y + plot.height) - 5);
+            gboolean inked = picture_count_in (&picture, style.ground, 0.08, x,
+                                               point (plot.y + plot.height) + 5, x + 1, HEIGHT)
+                             < (guint)(HEIGHT - point (plot.y + plot.height) - 5);
             if (inked && (gap >= style.text_pt * 0.9 || labels == 0))
               labels++;
             gaps += inked && gap >= style.text_pt * 0.9;
@@ -316,7 +352,8 @@ the_description_counts (void)
   wings.frame_year = 2013.5;
   g_autofree char *text = tf_wings_dup_description (&wings);
   g_assert_cmpstr (text, ==,
-                   "2 marks, 1 hint; 3 in view. Positive leads in 1, negative in 2. 1 keep Hale’s law, 1 break it, 1 "
+                   "2 marks, 1 hint; 3 in view. Positive leads in 1, negative in 2. 1 keep Hale’s "
+                   "law, 1 break it, 1 "
                    "cannot be said. Shown: 2011.94 to 2014.06. The frame in view is at 2013.50.");
   wings.plain = TRUE;
   g_autofree char *plain = tf_wings_dup_description (&wings);
@@ -330,18 +367,25 @@ void
 add_wings_tests (void)
 {
   g_test_add_func ("/chart/wings/hit-testing-and-drawing-agree", hit_and_drawing_agree);
-  g_test_add_func ("/chart/wings/the-larger-flux-is-the-larger-dot", the_larger_flux_is_the_larger_dot);
+  g_test_add_func ("/chart/wings/the-larger-flux-is-the-larger-dot",
+                   the_larger_flux_is_the_larger_dot);
   g_test_add_func ("/chart/wings/what-breaks-is-red-unless-a-divide-is-in-hand",
                    what_breaks_is_red_unless_a_divide_is_in_hand);
   g_test_add_func ("/chart/wings/a-hint-is-fainter-than-a-mark", a_hint_is_fainter_than_a_mark);
   g_test_add_func ("/chart/wings/the-frame-the-choice-and-the-divides-are-drawn",
                    the_frame_the_choice_and_the_divide_are_drawn);
-  g_test_add_func ("/chart/wings/the-chosen-dot-has-a-ring-of-ink", the_chosen_dot_has_a_ring_of_ink);
-  g_test_add_func ("/chart/wings/a-million-dots-are-a-density-picture", a_million_dots_are_a_density_picture);
-  g_test_add_func ("/chart/wings/near-by-a-million-are-dots-again", near_by_a_million_are_dots_again);
-  g_test_add_func ("/chart/wings/dots-are-drawn-on-pixels-and-on-paper", dots_look_alike_on_pixels_and_on_paper);
-  g_test_add_func ("/chart/wings/no-dots-say-what-will-stand-here", no_dots_say_what_will_stand_here);
-  g_test_add_func ("/chart/wings/numbers-that-are-not-there-do-no-harm", numbers_that_are_not_there_do_no_harm);
+  g_test_add_func ("/chart/wings/the-chosen-dot-has-a-ring-of-ink",
+                   the_chosen_dot_has_a_ring_of_ink);
+  g_test_add_func ("/chart/wings/a-million-dots-are-a-density-picture",
+                   a_million_dots_are_a_density_picture);
+  g_test_add_func ("/chart/wings/near-by-a-million-are-dots-again",
+                   near_by_a_million_are_dots_again);
+  g_test_add_func ("/chart/wings/dots-are-drawn-on-pixels-and-on-paper",
+                   dots_look_alike_on_pixels_and_on_paper);
+  g_test_add_func ("/chart/wings/no-dots-say-what-will-stand-here",
+                   no_dots_say_what_will_stand_here);
+  g_test_add_func ("/chart/wings/numbers-that-are-not-there-do-no-harm",
+                   numbers_that_are_not_there_do_no_harm);
   g_test_add_func ("/chart/wings/labels-of-time-never-overlap", labels_of_time_never_overlap);
   g_test_add_func ("/chart/wings/the-description-counts", the_description_counts);
 }
