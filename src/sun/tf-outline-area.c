@@ -21,7 +21,8 @@ static const double weights[4]
 
 enum
 {
-  MOST_EDGES = 2000 /* above it, meeting edges are not looked for: their error is then small */
+  MOST_EDGES = 2000, /* for the sum by slabs */
+  LINES = 512        /* of the plain sum for outlines of more edges: good to 1e-4 */
 };
 
 static int
@@ -66,18 +67,25 @@ add_meeting (const Edge *a, const Edge *b, GArray *heights)
 static void
 add_meetings (const GArray *edges, GArray *heights)
 {
-  if (edges->len > MOST_EDGES)
-    return;
   for (guint i = 0; i < edges->len; i++)
     for (guint j = i + 2; j < edges->len; j++)
       add_meeting (&g_array_index (edges, Edge, i), &g_array_index (edges, Edge, j), heights);
 }
 
+/* Where a line of constant v meets an edge. */
+typedef struct
+{
+  double u;
+  int left_out; /* number of the left-out area; -1: one of the rings */
+} Meeting;
+
 typedef struct
 {
   const TfOutline *outline;
-  GArray *all; /* of double */
-} Line;
+  GArray *meetings; /* of Meeting, on the line in hand */
+  GArray *at;       /* of double: those with one ring */
+  gboolean *within; /* a left-out area each: whether the sweep is in it */
+} Sweep;
 
 /* The integral of the area element du dv / (1 + u^2 + v^2)^(3/2) over u. */
 static double
@@ -87,33 +95,54 @@ upto (double u, double v)
   return u / (w * sqrt (w + u * u));
 }
 
-static gboolean
-inside (const TfOutline *outline, double u, double v)
+static void
+meet_rings (Sweep *sweep, GPtrArray *rings, gboolean left_out, double v)
 {
-  return tf_outline_inside_rings (outline, u, v) && !tf_outline_inside_left_out (outline, u, v);
+  for (guint k = 0; k < rings->len; k++)
+    {
+      g_array_set_size (sweep->at, 0);
+      tf_ring_crossings (g_ptr_array_index (rings, k), v, sweep->at);
+      for (guint j = 0; j < sweep->at->len; j++)
+        {
+          Meeting meeting = { g_array_index (sweep->at, double, j), left_out ? (int)k : -1 };
+          g_array_append_val (sweep->meetings, meeting);
+        }
+    }
 }
 
+/* From west to east, turning inside and outside at each edge. */
 static double
-line_area (Line *line, double v)
+line_area (Sweep *sweep, double v)
 {
-  GPtrArray *kinds[2] = { line->outline->rings, line->outline->left_out };
+  gboolean in = FALSE;
+  guint n_left_out = 0;
   double sum = 0.0;
-  g_array_set_size (line->all, 0);
-  for (int kind = 0; kind < 2; kind++)
-    for (guint k = 0; k < kinds[kind]->len; k++)
-      tf_ring_crossings (g_ptr_array_index (kinds[kind], k), v, line->all);
-  g_array_sort (line->all, compare);
-  for (guint k = 0; k + 1 < line->all->len; k++)
+  g_array_set_size (sweep->meetings, 0);
+  meet_rings (sweep, sweep->outline->rings, FALSE, v);
+  meet_rings (sweep, sweep->outline->left_out, TRUE, v);
+  g_array_sort (sweep->meetings, compare); /* u stands first in a Meeting */
+  for (guint k = 0; k + 1 < sweep->meetings->len; k++)
     {
-      double a = g_array_index (line->all, double, k), b = g_array_index (line->all, double, k + 1);
-      if (b > a && inside (line->outline, 0.5 * (a + b), v))
-        sum += upto (b, v) - upto (a, v);
+      const Meeting *m = &g_array_index (sweep->meetings, Meeting, k);
+      if (m->left_out < 0)
+        in = !in;
+      else
+        {
+          gboolean *within = &sweep->within[m->left_out];
+          *within = !*within;
+          n_left_out = *within ? n_left_out + 1 : n_left_out - 1;
+        }
+      if (in && n_left_out == 0)
+        sum += upto (m[1].u, v) - upto (m[0].u, v);
     }
+  /* The last edge leads out of everything. */
+  for (guint k = 0; k < sweep->outline->left_out->len; k++)
+    sweep->within[k] = FALSE;
   return sum;
 }
 
 static double
-slab_area (Line *line, double low, double high)
+slab_area (Sweep *sweep, double low, double high)
 {
   double sum = 0.0, pieces = ceil ((high - low) / MOST_HEIGHT), half = 0.5 * (high - low) / pieces;
   for (int piece = 0; piece < (int)pieces && half > 0.0; piece++)
@@ -121,26 +150,45 @@ slab_area (Line *line, double low, double high)
       double middle = low + (2.0 * piece + 1.0) * half;
       for (int j = 0; j < 4; j++)
         sum += half * weights[j]
-               * (line_area (line, middle - half * nodes[j])
-                  + line_area (line, middle + half * nodes[j]));
+               * (line_area (sweep, middle - half * nodes[j])
+                  + line_area (sweep, middle + half * nodes[j]));
     }
+  return sum;
+}
+
+static double
+sum_by_slabs (Sweep *sweep)
+{
+  g_autoptr (GArray) edges = g_array_new (FALSE, FALSE, sizeof (Edge));
+  g_autoptr (GArray) heights = g_array_new (FALSE, FALSE, sizeof (double));
+  double sum = 0.0;
+  add_edges (sweep->outline->rings, edges, heights);
+  add_edges (sweep->outline->left_out, edges, heights);
+  add_meetings (edges, heights);
+  g_array_sort (heights, compare);
+  for (guint k = 0; k + 1 < heights->len; k++)
+    sum += slab_area (sweep, g_array_index (heights, double, k),
+                      g_array_index (heights, double, k + 1));
+  return sum;
+}
+
+static double
+sum_by_lines (Sweep *sweep)
+{
+  const TfGrid *grid = &sweep->outline->grid;
+  double height = TF_GRID / grid->per_v / LINES, sum = 0.0;
+  for (int k = 0; k < LINES; k++)
+    sum += height * line_area (sweep, grid->v_min + (k + 0.5) * height);
   return sum;
 }
 
 double
 tf_outline_area (const TfOutline *outline, double radius_mm)
 {
-  g_autoptr (GArray) edges = g_array_new (FALSE, FALSE, sizeof (Edge));
-  g_autoptr (GArray) heights = g_array_new (FALSE, FALSE, sizeof (double));
-  g_autoptr (GArray) all = g_array_new (FALSE, FALSE, sizeof (double));
-  Line line = { .outline = outline, .all = all };
-  double sum = 0.0;
-  add_edges (outline->rings, edges, heights);
-  add_edges (outline->left_out, edges, heights);
-  add_meetings (edges, heights);
-  g_array_sort (heights, compare);
-  for (guint k = 0; k + 1 < heights->len; k++)
-    sum += slab_area (&line, g_array_index (heights, double, k),
-                      g_array_index (heights, double, k + 1));
-  return sum * radius_mm * radius_mm;
+  g_autoptr (GArray) meetings = g_array_new (FALSE, FALSE, sizeof (Meeting));
+  g_autoptr (GArray) at = g_array_new (FALSE, FALSE, sizeof (double));
+  g_autofree gboolean *within = g_new0 (gboolean, MAX (outline->left_out->len, 1));
+  Sweep sweep = { outline, meetings, at, within };
+  gboolean many = outline->n_vertices > MOST_EDGES;
+  return (many ? sum_by_lines (&sweep) : sum_by_slabs (&sweep)) * radius_mm * radius_mm;
 }

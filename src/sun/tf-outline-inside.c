@@ -74,23 +74,36 @@ edge_slabs (const TfRing *ring, guint k, guint *first, guint *last)
   *last = slab_of (ring, MAX (v1, v2));
 }
 
-static void
-sort_into_slabs (TfRing *ring)
+/* How many edges stand in each slab, added up; gives the sum of all. */
+static guint
+count_slabs (TfRing *ring, guint n_slabs)
 {
   guint first, last;
-  ring->n_slabs = CLAMP (ring->n / 2, 1, 256);
-  ring->slabs_per_v = ring->v_max > ring->v_min ? ring->n_slabs / (ring->v_max - ring->v_min) : 0.0;
-  ring->slab_start = g_new0 (guint, ring->n_slabs + 1);
+  double height = ring->v_max - ring->v_min;
+  ring->n_slabs = n_slabs;
+  ring->slabs_per_v = height > 0.0 ? n_slabs / height : 0.0;
+  g_free (ring->slab_start);
+  ring->slab_start = g_new0 (guint, n_slabs + 1);
   for (guint k = 0; k < ring->n; k++)
     {
       edge_slabs (ring, k, &first, &last);
       for (guint s = first; s <= last; s++)
         ring->slab_start[s + 1]++;
     }
-  for (guint s = 0; s < ring->n_slabs; s++)
+  for (guint s = 0; s < n_slabs; s++)
     ring->slab_start[s + 1] += ring->slab_start[s];
-  g_autofree guint *used = g_new0 (guint, ring->n_slabs);
-  ring->slab_edges = g_new (guint, ring->slab_start[ring->n_slabs]);
+  return ring->slab_start[n_slabs];
+}
+
+/* Fewer slabs for a ring that runs up and down all the time, so that the lists stay short. */
+static void
+sort_into_slabs (TfRing *ring)
+{
+  guint first, last, n_slabs = CLAMP (ring->n / 2, 1, 256);
+  while (count_slabs (ring, n_slabs) > 8 * ring->n + 1024 && n_slabs > 1)
+    n_slabs /= 2;
+  g_autofree guint *used = g_new0 (guint, n_slabs);
+  ring->slab_edges = g_new (guint, ring->slab_start[n_slabs]);
   for (guint k = 0; k < ring->n; k++)
     {
       edge_slabs (ring, k, &first, &last);

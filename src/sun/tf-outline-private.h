@@ -53,6 +53,7 @@ struct _TfOutline
 {
   TfTime time;
   GPtrArray *rings, *left_out; /* of TfRing */
+  guint n_vertices;            /* of all of them */
   TfPinnedPole pins[2];        /* their strings are owned here */
   guint n_pins;
   TfTangent tangent;

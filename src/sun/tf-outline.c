@@ -89,6 +89,14 @@ tf_outline_fill (TfOutline *outline, const TfVertex *vertices, guint n, gboolean
 {
   if (!check_vertices (vertices, n, name, error))
     return FALSE;
+  if (n > TF_OUTLINE_MOST_VERTICES - outline->n_vertices)
+    {
+      g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
+                   _ ("The outline has more than %d vertices; draw it more simply."),
+                   TF_OUTLINE_MOST_VERTICES);
+      return FALSE;
+    }
+  outline->n_vertices += n;
   TfRing *ring = g_new0 (TfRing, 1);
   ring->n = n;
   ring->u = g_new (double, n);

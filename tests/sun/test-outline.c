@@ -198,6 +198,39 @@ test_areas (void)
                  1e-9);
 }
 
+/* A saw of as many teeth as is allowed, every edge from bottom to top: the worst case of the slabs. */
+static void
+test_many_vertices (void)
+{
+  const guint most = TF_OUTLINE_MOST_VERTICES;
+  g_autofree TfVertex *saw = g_new (TfVertex, most + 1);
+  for (guint k = 0; k <= most; k++)
+    saw[k] = (TfVertex){ 20.0 * k / most, k % 2 == 0 ? -5.0 : 5.0 };
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfOutline) outline = tf_outline_new (noon (), saw, most, &error);
+  g_assert_no_error (error);
+  /* Each tooth is a triangle of half the box; the closing edge runs along the bottom. */
+  g_autoptr (TfOutline) whole = box (0.0, 20.0, -5.0, 5.0);
+  tf_check_between ("area of a saw", tf_outline_area (outline, 1.0) / tf_outline_area (whole, 1.0),
+                    0.2, 0.8);
+  for (int point = 0; point < 50; point++)
+    {
+      double lon = 0.4 * point + 0.03, lat = -4.9 + 0.19 * point;
+      g_assert_cmpint (contains (outline, lon, lat), ==, winds (saw, most, lon, lat));
+    }
+  g_assert_null (tf_outline_new (noon (), saw, most + 1, &error));
+  g_assert_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE);
+}
+
+/* The two ways of summing an area, by slabs and by lines, meet. */
+static void
+test_area_of_many (void)
+{
+  g_autoptr (TfOutline) few = tf_outline_new_cap (noon (), 50.0, 30.0, 20.0, 1990);
+  g_autoptr (TfOutline) many = tf_outline_new_cap (noon (), 50.0, 30.0, 20.0, 2010);
+  tf_check_near ("area", tf_outline_area (many, 1.0) / tf_outline_area (few, 1.0), 1.0, 1e-4);
+}
+
 /* -- edits ----------------------------------------------------------------------------------- */
 
 static void
@@ -532,6 +565,8 @@ add_outline_tests (void)
   g_test_add_func ("/sun/outline/sides-are-great-circles", test_great_circle_sides);
   g_test_add_func ("/sun/outline/holes-and-left-out-areas-are-outside", test_holes_and_left_out);
   g_test_add_func ("/sun/outline/areas-count-what-is-inside", test_areas);
+  g_test_add_func ("/sun/outline/a-saw-of-twenty-thousand-teeth-is-borne", test_many_vertices);
+  g_test_add_func ("/sun/outline/areas-of-few-and-many-vertices-meet", test_area_of_many);
   g_test_add_func ("/sun/outline/longitudes-run-on-over-the-seam", test_runs_on);
   g_test_add_func ("/sun/outline/what-is-no-outline-is-refused", test_refusals);
   g_test_add_func ("/sun/outline/a-split-shares-everything-out", test_split);
