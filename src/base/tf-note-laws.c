@@ -30,6 +30,8 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "cycle-no-time", TF_NOTE_REASON, N_ ("The cycle is unknown: the region has no time.") },
   { "cycle-provisional", TF_NOTE_CAUTION,
     N_ ("The cycle leans on a provisional minimum that a person entered.") },
+  { "divides-moved", TF_NOTE_CAUTION,
+    N_ ("Divides were moved by hand: {0} (cycle begun and hemisphere).") },
   { "every-mark-is-its-own-passage", TF_NOTE_CAUTION,
     N_ ("Marks are not linked into passages yet: every mark counts as a passage of its own, so one "
         "region seen on several "
@@ -69,6 +71,8 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "instruments-unscaled-pooled", TF_NOTE_CAUTION,
     N_ ("Frames of several instruments are pooled without a scale between their fields: {0}. "
         "Fluxes and floors are not alike.") },
+  { "minimum-provisional", TF_NOTE_CAUTION,
+    N_ ("The next minimum is provisional: {0:.1f}, entered by a person.") },
   { "rows-simulated", TF_NOTE_CAUTION,
     N_ ("{0} of the rows come from invented frames (SIMULATD = T).") },
   { "rows-with-other-floor", TF_NOTE_CAUTION,

@@ -72,13 +72,13 @@ compare_key (gconstpointer a, gconstpointer b)
 }
 
 static void
-build_left_out (JsonBuilder *builder, GHashTable *left_out)
+build_counts (JsonBuilder *builder, const char *name, GHashTable *counts)
 {
-  g_autoptr (GList) keys = g_list_sort (g_hash_table_get_keys (left_out), compare_key);
-  json_builder_set_member_name (builder, "left_out");
+  g_autoptr (GList) keys = g_list_sort (g_hash_table_get_keys (counts), compare_key);
+  json_builder_set_member_name (builder, name);
   json_builder_begin_object (builder);
   for (GList *l = keys; l != NULL; l = l->next)
-    tf_json_int (builder, l->data, GPOINTER_TO_UINT (g_hash_table_lookup (left_out, l->data)));
+    tf_json_int (builder, l->data, GPOINTER_TO_UINT (g_hash_table_lookup (counts, l->data)));
   json_builder_end_object (builder);
 }
 
@@ -92,7 +92,9 @@ build_sample (JsonBuilder *builder, const TfFindings *findings)
   tf_json_int (builder, "passages", tf_sample_count_passages (findings->sample));
   tf_json_int (builder, "marks", findings->n_marks);
   tf_json_int (builder, "hints", findings->n_hints);
-  build_left_out (builder, findings->left_out);
+  build_counts (builder, "left_out", findings->left_out);
+  build_counts (builder, "passed_without", findings->passed_without);
+  build_counts (builder, "cannot_say", findings->cannot_say);
   tf_json_number (builder, "even_floor_gauss", findings->even_floor_gauss);
   tf_json_int (builder, "rows_with_other_floor", findings->n_other_floor);
   json_builder_end_object (builder);
@@ -190,6 +192,30 @@ build_reason (JsonBuilder *builder, const char *code)
   tf_note_build_json (note, builder);
 }
 
+/* Both readings of an unsure cycle, the older first. */
+static void
+build_readings (JsonBuilder *builder, const TfVerdict *verdict)
+{
+  json_builder_set_member_name (builder, "readings");
+  if (verdict->as_number == TF_VERDICT_CANNOT_SAY || verdict->as_other == TF_VERDICT_CANNOT_SAY)
+    {
+      json_builder_add_null_value (builder);
+      return;
+    }
+  gboolean number_first = verdict->cycle.number < verdict->cycle.other;
+  json_builder_begin_array (builder);
+  for (int k = 0; k < 2; k++)
+    {
+      gboolean number = (k == 0) == number_first;
+      json_builder_begin_object (builder);
+      tf_json_int (builder, "cycle", number ? verdict->cycle.number : verdict->cycle.other);
+      tf_json_string (builder, "verdict",
+                      tf_verdict_name (number ? verdict->as_number : verdict->as_other));
+      json_builder_end_object (builder);
+    }
+  json_builder_end_array (builder);
+}
+
 void
 tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row, JsonBuilder *builder)
 {
@@ -208,5 +234,6 @@ tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row, Json
   tf_json_string (builder, "verdict", tf_verdict_name (verdict->kind));
   build_reason (builder, verdict->reason);
   tf_json_int (builder, "expected", verdict->expected);
+  build_readings (builder, verdict);
   json_builder_end_object (builder);
 }

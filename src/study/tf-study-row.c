@@ -32,7 +32,8 @@ void
 tf_study_measure_row (const TfMeasure *m, TfSampleRow *out)
 {
   gboolean plus = m->leading_polarity > 0;
-  const TfPole *lead = plus ? &m->positive : &m->negative, *follow = plus ? &m->negative : &m->positive;
+  const TfPole *lead = plus ? &m->positive : &m->negative,
+               *follow = plus ? &m->negative : &m->positive;
   gboolean two = m->leading_polarity != 0;
   tf_sample_row_init (out);
   out->time = m->time;
@@ -64,7 +65,9 @@ origin_of (const TfRow *row)
   {
     const char *name;
     TfOrigin origin;
-  } names[] = { { "kept as hinted", TF_ORIGIN_KEPT }, { "changed", TF_ORIGIN_CHANGED }, { "drawn new", TF_ORIGIN_DRAWN },
+  } names[] = { { "kept as hinted", TF_ORIGIN_KEPT },
+                { "changed", TF_ORIGIN_CHANGED },
+                { "drawn new", TF_ORIGIN_DRAWN },
                 { "outside", TF_ORIGIN_OUTSIDE } };
   for (guint k = 0; k < G_N_ELEMENTS (names); k++)
     if (g_strcmp0 (row->origin, names[k].name) == 0)
@@ -99,6 +102,7 @@ tf_study_point (const TfPoint *point, TfSampleRow *out)
   out->straddles = point->straddles;
   out->origin = point->hint ? TF_ORIGIN_HINT : TF_ORIGIN_KEPT;
   out->region = point->hint ? HINT_CLUSTER + (guint32)point->mark : point->region;
+  out->passage = point->hint ? out->region : (guint32)point->mark;
 }
 
 TfVerdict
@@ -115,14 +119,16 @@ tf_study_judge_measure (const TfStudy *study, const TfMeasure *measure)
 gboolean
 tf_study_has_floor (const TfRow *row, double gauss)
 {
-  return row->measure.floor_kind == TF_FLOOR_EVEN && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
+  return row->measure.floor_kind == TF_FLOOR_EVEN
+         && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
 }
 
 /* 3 sigma on the field used: a radial product and a map need no 1/mu. */
 static double
 frame_floor (const TfFrameRow *frame)
 {
-  gboolean as_is = frame->info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&frame->info->geometry);
+  gboolean as_is
+      = frame->info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&frame->info->geometry);
   return 3.0 * frame->noise_gauss / (as_is ? 1.0 : 0.5);
 }
 
@@ -137,7 +143,7 @@ tf_study_even_floor (TfLedger *ledger, GError **error)
   for (guint k = 0; k < frames->len; k++)
     {
       const TfFrameRow *frame = g_ptr_array_index (frames, k);
-      double floor = frame_floor (frame);
+      double floor = frame->info->kind == TF_KIND_MODEL_MAP ? NAN : frame_floor (frame);
       if (!(floor > 0))
         continue;
       GArray *floors = g_hash_table_lookup (by_instrument, frame->info->instrument);
@@ -153,6 +159,7 @@ tf_study_even_floor (TfLedger *ledger, GError **error)
   double greatest = NAN;
   g_hash_table_iter_init (&iter, by_instrument);
   while (g_hash_table_iter_next (&iter, NULL, &floors))
-    greatest = fmax (greatest, tf_median ((const double *)((GArray *)floors)->data, ((GArray *)floors)->len));
+    greatest = fmax (greatest,
+                     tf_median ((const double *)((GArray *)floors)->data, ((GArray *)floors)->len));
   return greatest;
 }

@@ -6,7 +6,8 @@
 
 #include "tf-study-private.h"
 
-/* The numbers as they would stand in a paper. Whole sentences, so that a translator can turn them. */
+/* The numbers as they would stand in a paper. Whole sentences, so that a translator can turn them.
+ */
 
 static const TfHaleRow *
 all_cycles (const TfFindings *findings)
@@ -42,12 +43,15 @@ add_hale (GString *out, const TfFindings *findings, const TfStudy *study)
       return;
     }
   g_string_append_printf (out,
-                          _ ("Of %u picks (%u regions) with a verdict, %u (%.1f %%, %.0f %%: %.1f–%.1f %%) break Hale's law; %u "
+                          _ ("Of %u picks (%u regions) with a verdict, %u (%.1f %%, %.0f %%: "
+                             "%.1f–%.1f %%) break Hale's law; %u "
                              "more cannot be said (at least %.1f, at most %.1f %%). "),
-                          r->n, r->regions, r->breaks, 100 * r->share, 100 * study->hale.level, 100 * r->clopper_pearson.low,
-                          100 * r->clopper_pearson.high, r->cannot_say, 100 * r->bounds.low, 100 * r->bounds.high);
+                          r->n, r->regions, r->breaks, 100 * r->share, 100 * study->hale.level,
+                          100 * r->clopper_pearson.low, 100 * r->clopper_pearson.high,
+                          r->cannot_say, 100 * r->bounds.low, 100 * r->bounds.high);
   if (isfinite (r->expected_false))
-    g_string_append_printf (out, _ ("Errors of place alone would make %.2f %% seem to break it. "), 100 * r->expected_false);
+    g_string_append_printf (out, _ ("Errors of place alone would make %.2f %% seem to break it. "),
+                            100 * r->expected_false);
 }
 
 static void
@@ -59,22 +63,45 @@ add_joy (GString *out, const TfFindings *findings, const TfStudy *study)
       g_string_append (out, _ ("There are too few tilts for Joy's law. "));
       return;
     }
-  const char *form = tf_joy_form_names[study->joy.form], *estimator = tf_joy_estimator_names[study->joy.estimator];
+  const char *form = tf_joy_form_names[study->joy.form],
+             *estimator = tf_joy_estimator_names[study->joy.estimator];
+  double separation = fmax (study->joy.separation_min_deg, study->sieve.separation_min_deg);
+  g_autofree char *cut = separation > 0 ? g_strdup_printf (_ ("separation from %.1f°"), separation)
+                                        : g_strdup (_ ("all separations"));
   g_string_append_printf (out,
-                          _ ("Joy's law (%s, %s, %u picks): slope %+.3f %s (%.0f %%: %+.3f to %+.3f, clustered by region), scatter "
-                             "%.1f°. "),
-                          form, estimator, f->n, f->slope, tf_joy_unit ((TfJoyForm)study->joy.form), 100 * study->joy.level,
+                          _ ("Joy's law (%s, %s, %s, %u picks, %u without polarity): slope %+.3f "
+                             "%s (%.0f %%: %+.3f to %+.3f, "
+                             "clustered by region), scatter %.1f°. "),
+                          form, estimator, cut, f->n, f->no_polarity, f->slope,
+                          tf_joy_unit ((TfJoyForm)study->joy.form), 100 * study->joy.level,
                           f->slope_ci.low, f->slope_ci.high, f->scatter_deg);
+}
+
+/* What changes the meaning of the numbers stands among them. */
+static void
+add_conditions (GString *out, const TfFindings *findings)
+{
+  static const char *const codes[]
+      = { "instruments-unscaled-pooled", "divides-moved", "minimum-provisional", "rows-simulated" };
+  for (guint k = 0; k < G_N_ELEMENTS (codes); k++)
+    {
+      const TfNote *note = tf_notes_find (findings->cautions, codes[k]);
+      g_autofree char *text = note != NULL ? tf_note_dup_text (note, FALSE) : NULL;
+      if (text != NULL)
+        g_string_append_printf (out, "%s ", text);
+    }
 }
 
 char *
 tf_findings_dup_words (const TfFindings *findings, const TfStudy *study)
 {
   GString *out = g_string_new (NULL);
-  g_string_append_printf (out, _ ("Sample: %u marks and %u hints, |CMD| ≤ %.0f°, even floor %.1f G. "), findings->n_marks,
-                          findings->n_hints, study->sieve.cmd_max_deg, findings->even_floor_gauss);
+  g_string_append_printf (
+      out, _ ("Sample: %u marks and %u hints, |CMD| ≤ %.0f°, even floor %.1f G. "),
+      findings->n_marks, findings->n_hints, study->sieve.cmd_max_deg, findings->even_floor_gauss);
   add_hale (out, findings, study);
   add_joy (out, findings, study);
+  add_conditions (out, findings);
   g_string_truncate (out, out->len - 1);
   return g_string_free (out, FALSE);
 }

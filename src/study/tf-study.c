@@ -8,18 +8,24 @@
 
 #include "tf-study-private.h"
 
-G_DEFINE_QUARK (tf-study-error-quark, tf_study_error)
+G_DEFINE_QUARK (tf - study - error - quark, tf_study_error)
 
 #define SIEVE(member) offsetof (TfSieveParams, member)
 
 const TfOption tf_sieve_options[] = {
-  { "with-hints", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take hints in, counted apart"), SIEVE (with_hints) },
-  { "cmd-max", TF_OPTION_NUMBER, "deg", 60, 0, 90, NULL, N_ ("farthest from the central meridian"), SIEVE (cmd_max_deg) },
+  { "with-hints", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take hints in, counted apart"),
+    SIEVE (with_hints) },
+  { "cmd-max", TF_OPTION_NUMBER, "deg", 60, 0, 90, NULL, N_ ("farthest from the central meridian"),
+    SIEVE (cmd_max_deg) },
   { "mu-min", TF_OPTION_NUMBER, "", 0, 0, 1, NULL, N_ ("least mu"), SIEVE (mu_min) },
-  { "flux-min", TF_OPTION_NUMBER, "Mx", 0, 0, 1e25, NULL, N_ ("least unsigned flux"), SIEVE (flux_min_mx) },
-  { "separation-min", TF_OPTION_NUMBER, "deg", 0, 0, 90, NULL, N_ ("least separation of the poles"), SIEVE (separation_min_deg) },
-  { "with-ephemeral", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take ephemeral regions in"), SIEVE (with_ephemeral) },
-  { "with-models", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take model maps in"), SIEVE (with_models) },
+  { "flux-min", TF_OPTION_NUMBER, "Mx", 0, 0, 1e25, NULL, N_ ("least unsigned flux"),
+    SIEVE (flux_min_mx) },
+  { "separation-min", TF_OPTION_NUMBER, "deg", 0, 0, 90, NULL, N_ ("least separation of the poles"),
+    SIEVE (separation_min_deg) },
+  { "with-ephemeral", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take ephemeral regions in"),
+    SIEVE (with_ephemeral) },
+  { "with-models", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take model maps in"),
+    SIEVE (with_models) },
   { NULL },
 };
 
@@ -50,7 +56,8 @@ tf_study_free (TfStudy *study)
 TfDivides *
 tf_study_dup_divides (const TfStudy *study)
 {
-  return study->divides != NULL ? tf_divides_ref (study->divides) : tf_divides_new (&study->divide);
+  return study->divides != NULL ? tf_divides_with_params (study->divides, &study->divide)
+                                : tf_divides_new (&study->divide);
 }
 
 void
@@ -62,6 +69,8 @@ tf_findings_free (TfFindings *findings)
   g_free (findings->verdicts);
   g_free (findings->marks);
   g_clear_pointer (&findings->left_out, g_hash_table_unref);
+  g_clear_pointer (&findings->passed_without, g_hash_table_unref);
+  g_clear_pointer (&findings->cannot_say, g_hash_table_unref);
   g_clear_pointer (&findings->hale, g_array_unref);
   g_clear_pointer (&findings->joy, g_array_unref);
   g_clear_pointer (&findings->what_if, g_array_unref);
@@ -69,70 +78,20 @@ tf_findings_free (TfFindings *findings)
   g_free (findings);
 }
 
-/* -- the sieve ----------------------------------------------------------------------------- */
-
-/* Why a row is not taken, as a code for the count; NULL when it is. Mark conditions first, then region conditions. */
-static const char *
-sieve (const TfSieveParams *p, const TfRow *row, const TfSampleRow *s)
-{
-  if (!p->with_models && g_strcmp0 (row->kind, "model map") == 0)
-    return "model-map";
-  if (row->is_hint && row->unipolar)
-    return "unipolar-hint";
-  if (fabs (s->cmd_deg) > p->cmd_max_deg)
-    return "cmd-beyond";
-  if (s->mu < p->mu_min)
-    return "mu-below";
-  if (s->size == 1 && !p->with_ephemeral)
-    return "ephemeral";
-  if (s->flux_mx < p->flux_min_mx)
-    return "flux-below";
-  if (s->separation_deg < p->separation_min_deg)
-    return "separation-below";
-  return NULL;
-}
-
-static void
-count_left_out (GHashTable *left_out, const char *reason)
-{
-  guint n = GPOINTER_TO_UINT (g_hash_table_lookup (left_out, reason));
-  g_hash_table_insert (left_out, (gpointer)reason, GUINT_TO_POINTER (n + 1));
-}
-
-static void
-take_rows (TfFindings *findings, const TfStudy *study, const GPtrArray *rows)
-{
-  findings->marks = g_new0 (gint64, rows->len + 1);
-  for (guint k = 0; k < rows->len; k++)
-    {
-      const TfRow *row = g_ptr_array_index (rows, k);
-      TfSampleRow s;
-      tf_study_row (row, &s);
-      const char *reason = sieve (&study->sieve, row, &s);
-      if (reason != NULL)
-        {
-          count_left_out (findings->left_out, reason);
-          continue;
-        }
-      findings->marks[tf_sample_get_n (findings->sample)] = row->is_hint ? -row->mark : row->mark;
-      tf_sample_add (findings->sample, &s);
-      findings->n_marks += !row->is_hint;
-      findings->n_hints += row->is_hint;
-      findings->n_other_floor += !tf_study_has_floor (row, findings->even_floor_gauss);
-      findings->simulated += row->simulated;
-    }
-}
-
 /* -- the laws ------------------------------------------------------------------------------ */
 
 TfVerdict *
-tf_study_judge (const TfStudy *study, const TfSample *sample)
+tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s)
 {
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   guint n = tf_sample_get_n (sample);
   TfVerdict *verdicts = g_new0 (TfVerdict, n + 1);
   for (guint k = 0; k < n; k++)
-    verdicts[k] = tf_verdict_judge (tf_sample_get (sample, k), divides, &study->verdict);
+    {
+      TfSampleRow row = *tf_sample_get (sample, k);
+      row.time = tf_time_add (row.time, -later_s);
+      verdicts[k] = tf_verdict_judge (&row, divides, &study->verdict);
+    }
   return verdicts;
 }
 
@@ -144,42 +103,11 @@ fit_joy (const TfFindings *findings, const TfStudy *study)
   for (guint k = 0; k < findings->hale->len; k++)
     {
       const TfHaleRow *row = &g_array_index (findings->hale, TfHaleRow, k);
-      TfJoyFit fit = tf_joy_fit (findings->sample, findings->verdicts, row->cycle, row->hemisphere, &study->joy);
+      TfJoyFit fit = tf_joy_fit (findings->sample, findings->verdicts, row->cycle, row->hemisphere,
+                                 &study->joy);
       g_array_append_val (fits, fit);
     }
   return fits;
-}
-
-static int
-compare_text (gconstpointer a, gconstpointer b)
-{
-  return g_strcmp0 (*(char *const *)a, *(char *const *)b);
-}
-
-static void
-add_cautions (TfFindings *findings, const GPtrArray *rows)
-{
-  g_autoptr (GPtrArray) instruments = g_ptr_array_new ();
-  for (guint k = 0; k < rows->len; k++)
-    {
-      const TfRow *row = g_ptr_array_index (rows, k);
-      if (!g_ptr_array_find_with_equal_func (instruments, row->instrument, g_str_equal, NULL))
-        g_ptr_array_add (instruments, row->instrument);
-    }
-  tf_notes_add (findings->cautions, "every-mark-is-its-own-passage", "");
-  if (findings->n_hints > 0)
-    tf_notes_add (findings->cautions, "hints-counted", "ii", (int)findings->n_hints, (int)findings->n_marks);
-  if (instruments->len > 1)
-    {
-      g_ptr_array_sort (instruments, compare_text);
-      g_ptr_array_add (instruments, NULL);
-      g_autofree char *names = g_strjoinv (", ", (char **)instruments->pdata);
-      tf_notes_add (findings->cautions, "instruments-unscaled-pooled", "s", names);
-    }
-  if (findings->n_other_floor > 0)
-    tf_notes_add (findings->cautions, "rows-with-other-floor", "id", (int)findings->n_other_floor, findings->even_floor_gauss);
-  if (findings->simulated > 0)
-    tf_notes_add (findings->cautions, "rows-simulated", "i", (int)findings->simulated);
 }
 
 /* Mean and median of all axis tilts of the sample, whatever the verdict. */
@@ -207,8 +135,10 @@ complain_empty (const TfStudy *study, const GPtrArray *rows, TfLedger *ledger, G
   if (rows->len > 0)
     return FALSE;
   g_set_error (error, TF_STUDY_ERROR, TF_STUDY_ERROR_EMPTY,
-               study->sieve.with_hints ? _ ("%s holds no mark and no hint to test a law on; fill it with frames first.")
-                                       : _ ("Nobody has marked a region in %s yet; mark some, or take the hints in (--with-hints)."),
+               study->sieve.with_hints
+                   ? _ ("%s holds no mark and no hint to test a law on; fill it with frames first.")
+                   : _ ("Nobody has marked a region in %s yet; mark some, or take the hints in "
+                        "(--with-hints)."),
                tf_ledger_get_path (ledger));
   return TRUE;
 }
@@ -228,14 +158,19 @@ tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
   g_autoptr (TfFindings) findings = g_new0 (TfFindings, 1);
   findings->sample = tf_sample_new ();
   findings->left_out = g_hash_table_new (g_str_hash, g_str_equal);
+  findings->passed_without = g_hash_table_new (g_str_hash, g_str_equal);
+  findings->cannot_say = g_hash_table_new (g_str_hash, g_str_equal);
   findings->cautions = tf_notes_new ();
   findings->even_floor_gauss = floor;
-  take_rows (findings, study, rows);
-  findings->verdicts = tf_study_judge (study, findings->sample);
+  tf_study_take_rows (findings, study, rows);
+  findings->verdicts = tf_study_judge (study, findings->sample, 0.0);
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
+    if (findings->verdicts[k].reason != NULL)
+      tf_study_count (findings->cannot_say, findings->verdicts[k].reason);
   findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);
   findings->joy = fit_joy (findings, study);
   findings->what_if = tf_study_what_if (study, findings->sample);
   average_tilts (findings);
-  add_cautions (findings, rows);
+  tf_study_add_cautions (findings, study, rows);
   return g_steal_pointer (&findings);
 }

@@ -5,8 +5,9 @@
 
 /* TfStudy: which rows are taken, by which conventions, and what the laws say of them.
  *
- * Mark conditions act first, then the sampling rule picks one mark a passage, then region conditions act on the pick.
- * Until passages exist every mark is its own passage, and the result says so.
+ * Mark conditions act first, then the sampling rule picks one mark a passage, then region
+ * conditions act on the pick. Until passages exist every mark is its own passage, and the result
+ * says so.
  */
 
 #include <glib.h>
@@ -30,13 +31,13 @@ typedef enum
 
 typedef struct
 {
-  gboolean with_hints;    /* hints counted apart from marks */
-  double cmd_max_deg;     /* 60; maps have no CMD and pass */
-  double mu_min;          /* 0 */
-  double flux_min_mx;     /* 0 */
+  gboolean with_hints;       /* hints counted apart from marks */
+  double cmd_max_deg;        /* 60; maps have no CMD and pass */
+  double mu_min;             /* 0 */
+  double flux_min_mx;        /* 0 */
   double separation_min_deg; /* 0 */
   gboolean with_ephemeral;
-  gboolean with_models;   /* model maps */
+  gboolean with_models; /* model maps */
 } TfSieveParams;
 extern const TfOption tf_sieve_options[];
 
@@ -48,15 +49,19 @@ typedef struct
   TfDivideParams divide;
   TfHaleParams hale;
   TfJoyParams joy;
-  TfDivides *divides; /* NULL: all computed */
+  TfDivides *divides; /* the moved ones; their options are those of @divide. NULL: all computed */
 } TfStudy;
 TfStudy *tf_study_new_default (void);
 void tf_study_free (TfStudy *study);
 
-/** TfWhatIf: share that breaks and Joy slope under one other choice. */
+/** TfWhatIf: share that breaks and Joy slope under one other choice, all else as chosen. */
 typedef struct
 {
-  const char *name; /* "as-chosen", "cycle-by-date-only", "cycle-by-latitude-alone", "equator-zone-5", "least-squares", ... */
+  /* "as-chosen", "cycle-by-date-only", "cycle-by-latitude-alone", "minima-half-a-year-earlier",
+     "minima-half-a-year-later", "equator-zone-0", "equator-zone-3", "equator-zone-5",
+     "equator-zone-8", "least-squares", "robust", "steep-left-out", "separation-above-2.5",
+     "cmd-within-45", "hints-left-out" */
+  const char *name;
   guint n, breaks;
   double share, slope;
 } TfWhatIf;
@@ -65,18 +70,21 @@ typedef struct
 typedef struct
 {
   TfSample *sample;
-  TfVerdict *verdicts;      /* one a sample row */
-  gint64 *marks;            /* local key of each row; hints negative */
-  guint n_marks, n_hints;   /* among the rows */
-  GHashTable *left_out;     /* reason code -> GUINT_TO_POINTER (count) */
-  double even_floor_gauss;  /* the study's floor; NaN when it could not be worked out */
-  guint n_other_floor;      /* rows measured with another floor than the study's */
-  GArray *hale;             /* TfHaleRow */
-  GArray *joy;              /* TfJoyFit: each cycle and hemisphere, then all */
-  GArray *what_if;          /* TfWhatIf */
-  guint simulated;          /* rows from invented frames */
+  TfVerdict *verdicts;    /* one a sample row */
+  gint64 *marks;          /* local key of each row; hints negative */
+  guint n_marks, n_hints; /* among the rows */
+  GHashTable *left_out;   /* why the sieve left a row out -> GUINT_TO_POINTER (count) */
+  /* condition -> count of rows taken though they lack what it asks about */
+  GHashTable *passed_without;
+  GHashTable *cannot_say; /* reason code of a verdict -> count */
+  double even_floor_gauss; /* the study's floor; NaN when it could not be worked out */
+  guint n_other_floor;     /* rows measured with another floor than the study's */
+  GArray *hale;            /* TfHaleRow */
+  GArray *joy;             /* TfJoyFit: each cycle and hemisphere, then all */
+  GArray *what_if;         /* TfWhatIf */
+  guint simulated;         /* rows from invented frames */
   double mean_tilt_deg, median_tilt_deg;
-  TfNotes *cautions;        /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
+  TfNotes *cautions; /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
 } TfFindings;
 TfFindings *tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error);
 void tf_findings_free (TfFindings *findings);
@@ -87,15 +95,20 @@ void tf_study_row (const TfRow *row, TfSampleRow *out);
 void tf_study_measure_row (const TfMeasure *measure, TfSampleRow *out);
 /** tf_study_point: a point of the wings as a sample row (as far as it goes). */
 void tf_study_point (const TfPoint *point, TfSampleRow *out);
-/** tf_study_judge_measure: verdict of one measure under the study's divides: what the slip and `measure` show. */
+/** tf_study_judge_measure: verdict of one measure under the study's divides: what the slip and
+ * `measure` show. */
 TfVerdict tf_study_judge_measure (const TfStudy *study, const TfMeasure *measure);
 
 /** tf_findings_build_json: the `laws` document of 6-commands. */
-void tf_findings_build_json (const TfFindings *findings, const TfStudy *study, JsonBuilder *builder);
+void tf_findings_build_json (const TfFindings *findings, const TfStudy *study,
+                             JsonBuilder *builder);
 /** tf_findings_dup_words: the numbers as they would stand in a paper, in the current language. */
 char *tf_findings_dup_words (const TfFindings *findings, const TfStudy *study);
-/** tf_verdict_build_members: adds "polarity_tilt_deg", "cycle":{number, sure, reason} and "hale":{verdict, reason, expected} to the open object. */
-void tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row, JsonBuilder *builder);
+/** tf_verdict_build_members: adds "polarity_tilt_deg", "cycle":{number, sure, reason} and
+ * "hale":{verdict, reason, expected, readings} to the open object; readings: [{cycle, verdict}...]
+ * when the cycle alone is unsure, else null. */
+void tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row,
+                               JsonBuilder *builder);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfStudy, tf_study_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFindings, tf_findings_free)
