@@ -217,10 +217,11 @@ cut_first_ring (Split *split, const TfOutline *outline, GError **error)
   guint n = count_meetings (split->tangent, &split->cut, ring, edges, at);
   if (n != 2)
     {
-      g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
-                   _ ("The line crosses the outline %u times; draw it right across, so that it "
-                      "crosses twice."),
-                   n);
+      g_set_error (
+          error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
+          _ ("The line must cross the outline exactly twice (crossings: %u); draw it right "
+             "across."),
+          n);
       return FALSE;
     }
   GArray *a = part_between (ring, edges[0], &at[0], edges[1], &at[1]);

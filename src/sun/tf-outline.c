@@ -66,7 +66,7 @@ check_vertices (const TfVertex *vertices, guint n, const char *name, GError **er
   if (n < 3)
     {
       g_set_error (error, TF_OUTLINE_ERROR, TF_OUTLINE_ERROR_SHAPE,
-                   _ ("The outline's %s has %u vertices; give at least 3."), name, n);
+                   _ ("The outline's %s has too few vertices (%u); give at least 3."), name, n);
       return FALSE;
     }
   for (guint k = 0; k < n; k++)
