@@ -7,9 +7,12 @@
 
 #include "tf-constants.h"
 
-#define STEP_DEG   1.0 /* of a great circle between two points of a trail */
-#define JUMP_UNITS 6.0 /* steps shorter than this are never looked at for a seam */
-#define HALVINGS   12  /* of a step in which the line is lost */
+#define STEP_DEG   3.0  /* of a great circle, before it is halved where it bends */
+#define JUMP_UNITS 6.0  /* steps shorter than this are straight and have no seam */
+#define HALVINGS   14   /* of a step in which the line is lost */
+#define STRAIGHT   0.15 /* units that the middle of a step may lie beside the straight line */
+#define DEPTH      10
+#define NEAR_UNITS 1.5 /* points nearer than this to the last are not drawn */
 
 TfTrail *
 tf_trail_new (void)
@@ -84,35 +87,33 @@ far_apart (TfTrailPoint a, TfTrailPoint b)
   return hypot (a.x - b.x, a.y - b.y);
 }
 
-/* The last place seen on the way from @seen to @lost (both in t). */
+/* The last place seen on the way from @seen to @lost (both in t); @lost becomes its t. */
 static TfTrailPoint
-find_limb (const Walk *walk, double seen, double lost, TfTrailPoint at)
+find_limb (const Walk *walk, double seen, double *lost, TfTrailPoint at)
 {
   for (int k = 0; k < HALVINGS; k++)
     {
       TfTrailPoint point;
-      double middle = (seen + lost) / 2;
+      double middle = (seen + *lost) / 2;
       if (see (walk, middle, &point))
         {
           seen = middle;
           at = point;
         }
       else
-        lost = middle;
+        *lost = middle;
     }
+  *lost = seen;
   return at;
 }
 
 /* On a smooth line the half-way point lies near the middle of the step; across a seam it lies at
  * one of its ends. */
 static gboolean
-jumps (const Walk *walk, double t0, TfTrailPoint a, double t1, TfTrailPoint b)
+jumps (TfTrailPoint a, TfTrailPoint middle, TfTrailPoint b)
 {
-  double step = far_apart (a, b);
-  TfTrailPoint middle, mean = { (a.x + b.x) / 2, (a.y + b.y) / 2 };
-  if (step < JUMP_UNITS)
-    return FALSE;
-  return !see (walk, (t0 + t1) / 2, &middle) || far_apart (middle, mean) > 0.4 * step;
+  TfTrailPoint mean = { (a.x + b.x) / 2, (a.y + b.y) / 2 };
+  return far_apart (middle, mean) > 0.4 * far_apart (a, b);
 }
 
 static void
@@ -137,29 +138,59 @@ find_seam (const Walk *walk, double t0, TfTrailPoint *a, double t1, TfTrailPoint
     }
 }
 
-static void
-step_on (TfTrail *trail, const Walk *walk, double t0, gboolean saw0, TfTrailPoint a, double t1,
-         gboolean saw1, TfTrailPoint b)
+/* How far the half-way point lies beside the straight line. */
+static double
+bend (TfTrailPoint a, TfTrailPoint middle, TfTrailPoint b)
 {
-  if (saw0 && saw1)
+  double length = far_apart (a, b);
+  double cross = (b.x - a.x) * (middle.y - a.y) - (b.y - a.y) * (middle.x - a.x);
+  return length > 0 ? fabs (cross) / length : 0;
+}
+
+/* Halved until it is straight to a fraction of a pixel. */
+static void
+step_in_sight (TfTrail *trail, const Walk *walk, double t0, TfTrailPoint a, double t1,
+               TfTrailPoint b, int depth)
+{
+  TfTrailPoint middle;
+  double t = (t0 + t1) / 2;
+  if (far_apart (a, b) < JUMP_UNITS || !see (walk, t, &middle))
+    add_point (trail, b);
+  else if (jumps (a, middle, b))
     {
       TfTrailPoint leave = a, enter = b;
-      if (!jumps (walk, t0, a, t1, b))
-        {
-          add_point (trail, b);
-          return;
-        }
       find_seam (walk, t0, &leave, t1, &enter);
       add_point (trail, leave);
       begin_piece (trail, enter);
       add_point (trail, b);
     }
+  else if (depth < DEPTH && bend (a, middle, b) > STRAIGHT)
+    {
+      step_in_sight (trail, walk, t0, a, t, middle, depth + 1);
+      step_in_sight (trail, walk, t, middle, t1, b, depth + 1);
+    }
+  else
+    add_point (trail, b);
+}
+
+static void
+step_on (TfTrail *trail, const Walk *walk, double t0, gboolean saw0, TfTrailPoint a, double t1,
+         gboolean saw1, TfTrailPoint b)
+{
+  if (saw0 && saw1)
+    step_in_sight (trail, walk, t0, a, t1, b, 0);
   else if (saw0)
-    add_point (trail, find_limb (walk, t0, t1, a));
+    {
+      double last = t1;
+      TfTrailPoint limb = find_limb (walk, t0, &last, a);
+      step_in_sight (trail, walk, t0, a, last, limb, 0);
+    }
   else if (saw1)
     {
-      begin_piece (trail, find_limb (walk, t1, t0, b));
-      add_point (trail, b);
+      double first = t0;
+      TfTrailPoint limb = find_limb (walk, t1, &first, b);
+      begin_piece (trail, limb);
+      step_in_sight (trail, walk, first, limb, t1, b, 0);
     }
 }
 
@@ -280,6 +311,20 @@ tf_trail_new_ring (const TfOverlay *overlay, const TfVertex *ring, guint n)
 
 /* -- reading --------------------------------------------------------------------------------- */
 
+static void
+piece_path (const TfTrailPoint *points, guint n, cairo_t *cr)
+{
+  TfTrailPoint last = points[0];
+  cairo_new_sub_path (cr);
+  cairo_line_to (cr, last.x, last.y);
+  for (guint j = 1; j < n; j++)
+    if (j == n - 1 || far_apart (points[j], last) >= NEAR_UNITS)
+      {
+        last = points[j];
+        cairo_line_to (cr, last.x, last.y);
+      }
+}
+
 void
 tf_trail_path (const TfTrail *trail, cairo_t *cr)
 {
@@ -287,9 +332,7 @@ tf_trail_path (const TfTrail *trail, cairo_t *cr)
     {
       guint n;
       const TfTrailPoint *points = tf_trail_get_piece (trail, k, &n);
-      cairo_new_sub_path (cr);
-      for (guint j = 0; j < n; j++)
-        cairo_line_to (cr, points[j].x, points[j].y);
+      piece_path (points, n, cr);
       if (trail->closed)
         cairo_close_path (cr);
     }

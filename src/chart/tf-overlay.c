@@ -43,7 +43,7 @@ grid_colour (const TfOverlay *overlay, const TfChartStyle *style)
 static void
 stroke_on (cairo_t *cr, TfColour halo, TfColour line, double width, const double *dash, int n_dash)
 {
-  cairo_set_line_join (cr, CAIRO_LINE_JOIN_ROUND);
+  cairo_set_line_join (cr, CAIRO_LINE_JOIN_BEVEL);
   cairo_set_line_cap (cr, CAIRO_LINE_CAP_BUTT);
   cairo_set_dash (cr, dash, n_dash, 0);
   tf_chart_set (cr, halo);
@@ -79,7 +79,7 @@ draw_meridians (cairo_t *cr, const TfOverlay *overlay, double step)
   for (double lon = 0; lon < 360 - 1e-9; lon += step)
     {
       double at = fmod (zero + lon + 360, 360);
-      tf_trail_add_line (trail, overlay, along_meridian, &at, 90, FALSE);
+      tf_trail_add_line (trail, overlay, along_meridian, &at, 15, FALSE);
     }
   tf_trail_path (trail, cr);
 }
@@ -89,7 +89,7 @@ draw_parallels (cairo_t *cr, const TfOverlay *overlay, double step)
 {
   g_autoptr (TfTrail) trail = tf_trail_new ();
   for (double lat = -floor (89.999 / step) * step; lat < 90; lat += step)
-    tf_trail_add_line (trail, overlay, along_parallel, &lat, 180, FALSE);
+    tf_trail_add_line (trail, overlay, along_parallel, &lat, 36, FALSE);
   tf_trail_path (trail, cr);
 }
 
@@ -107,8 +107,8 @@ draw_graticule (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style
   cairo_stroke (cr);
   g_autoptr (TfTrail) trail = tf_trail_new ();
   if (isfinite (central))
-    tf_trail_add_line (trail, overlay, along_meridian, &central, 90, FALSE);
-  tf_trail_add_line (trail, overlay, along_parallel, &equator, 180, FALSE);
+    tf_trail_add_line (trail, overlay, along_meridian, &central, 15, FALSE);
+  tf_trail_add_line (trail, overlay, along_parallel, &equator, 36, FALSE);
   tf_trail_path (trail, cr);
   line.a = MIN (line.a * 2.2, 1);
   tf_chart_set (cr, line);
@@ -283,6 +283,7 @@ tf_overlay_draw (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *styl
   cairo_save (cr);
   cairo_rectangle (cr, area.x, area.y, area.width, area.height);
   cairo_clip (cr);
+  cairo_set_antialias (cr, CAIRO_ANTIALIAS_FAST); /* half the time, and no eye sees it */
   if (overlay->graticule)
     draw_graticule (cr, overlay, style);
   draw_limb (cr, overlay, style);
