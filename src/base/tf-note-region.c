@@ -10,6 +10,19 @@ const TfNoteKind tf_note_kinds_region[] = {
   { "floor-below-noise", TF_NOTE_CAUTION,
     N_ ("The floor is {0:.1f} G in the observed field here, less than twice the noise of {1:.1f} G: noise adds to the flux. "
         "Raise the floor or leave frames this near the limb out.") },
+  { "hint-active-frame", TF_NOTE_CAUTION,
+    N_ ("More than half of this frame is active: its noise cannot be told, the hint's level is {0:.0f} G. Look at the outline.") },
+  { "hint-at-edge", TF_NOTE_CAUTION,
+    N_ ("The hint touches missing data, the frame's edge or the limb: part of the region may be missing.") },
+  { "hint-leader-flips", TF_NOTE_CAUTION,
+    N_ ("The leading polarity changes when the floor is moved by {0:.0f} %: look before you keep this hint.") },
+  { "hint-long", TF_NOTE_CAUTION,
+    N_ ("The poles are {0:.0f} Mm apart, near the most that is plausible for this flux ({1:.0f} Mm): it may be two regions. "
+        "Split it if so.") },
+  { "hint-neighbour-near", TF_NOTE_CAUTION,
+    N_ ("Another region is close by and was kept apart: join the two if they are one.") },
+  { "hint-one-sided", TF_NOTE_CAUTION,
+    N_ ("{0:.0f} % of the flux is not balanced: part of the other polarity may lie outside the hint.") },
   { "leader-unsure", TF_NOTE_CAUTION,
     N_ ("The leading polarity is not sure: the witnesses differ, or the poles' longitudes differ by less than twice their "
         "uncertainty. Look at the picture, or at a frame nearer central meridian.") },

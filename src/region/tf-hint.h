@@ -38,7 +38,7 @@ typedef struct
   gboolean unipolar;
   TfOutline *outline;
   TfMeasure measure;   /* full pixels inside the outline, never the working grid */
-  TfNotes *cautions;   /* of the hint itself: neighbour-near, longer-than-plausible, ... (the measure has its own) */
+  TfNotes *cautions;   /* of the hint itself: codes hint-... (the measure has its own) */
 } TfHint;
 
 void tf_hint_params_init (TfHintParams *params);

@@ -29,6 +29,7 @@ typedef enum
 {
   TF_REGION_ERROR_EMPTY,     /* no pixel of the frame lies inside the outline */
   TF_REGION_ERROR_OPTION,    /* options that cannot go together */
+  TF_REGION_ERROR_KIND,      /* not on this kind of frame */
   TF_REGION_ERROR_CANCELLED,
 } TfRegionError;
 

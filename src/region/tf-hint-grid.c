@@ -1,0 +1,323 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+
+/* The working grid of the hints: one pass over the pixels, a Gaussian, the noise of what comes out. */
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+#include "tf-constants.h"
+#include "tf-hint-private.h"
+
+enum
+{
+  STRIPES = 8, /* of rows, each with its own sums, added in order: the same for any number of threads */
+  RINGS = 8,
+  RING_CELLS = 50, /* fewer than this do not make a ring of their own */
+  CLIPS = 6,
+};
+static const double MU_PIXEL = 0.21, MU_CELL = 0.26;
+/* A pixel of the pyramid this small is fine enough for the grid, in cells. */
+static const double FINE = 0.42;
+/* Cells less covered than this hold nothing. */
+static const double COVERED = 0.05;
+static const double ACTIVE_SHARE = 0.5;
+
+typedef struct
+{
+  const TfHintGrid *grid;
+  TfGeometry geometry; /* of the pyramid's level */
+  const float *pixels;
+  guint width, height;
+  double scale;
+  gboolean radial;
+  float *flux, *area; /* STRIPES times n x n */
+} Pass;
+
+static double
+dot (const double a[3], const double b[3])
+{
+  return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
+}
+
+static void
+add_row (const Pass *pass, guint y, double (*unit)[3], double *mu, double *area, float *flux, float *covered)
+{
+  const TfHintGrid *g = pass->grid;
+  const float *row = pass->pixels + (gsize)y * pass->width;
+  double half = 0.5 * g->n, per_cell = g->radius_mm / g->cell_mm;
+  tf_geometry_row_sun (&pass->geometry, y + 1.0, 1.0, pass->width, unit, mu, area);
+  for (guint k = 0; k < pass->width; k++)
+    {
+      if (!(mu[k] > MU_PIXEL) || !isfinite (row[k]))
+        continue;
+      double stretch = per_cell * sqrt (2.0 / (1.0 + dot (unit[k], g->centre)));
+      double x = half + stretch * dot (unit[k], g->west), y_cell = half + stretch * dot (unit[k], g->north);
+      if (!(x >= 0.0 && x < g->n && y_cell >= 0.0 && y_cell < g->n))
+        continue;
+      gsize at = (gsize)y_cell * g->n + (gsize)x;
+      flux[at] += (float)(row[k] * pass->scale * area[k] / (pass->radial ? 1.0 : mu[k]));
+      covered[at] += (float)area[k];
+    }
+}
+
+/* A "band" of the pool is a stripe here, whatever the number of rows. */
+static void
+do_stripe (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  const Pass *pass = data;
+  gsize cells = (gsize)pass->grid->n * pass->grid->n;
+  double (*unit)[3] = g_malloc_n (pass->width, sizeof *unit);
+  g_autofree double *mu = g_new (double, pass->width), *area = g_new (double, pass->width);
+  guint from = pass->height * band / STRIPES, to = pass->height * (band + 1) / STRIPES;
+  for (guint y = from; y < to; y++)
+    add_row (pass, y, unit, mu, area, pass->flux + band * cells, pass->area + band * cells);
+  g_free (unit);
+}
+
+static void
+choose_level (Pass *pass, const TfFrame *frame, double cell_mm)
+{
+  const TfGeometry *g = tf_frame_get_geometry (frame);
+  double pixel_mm = tf_geometry_scale_arcsec (g) * TF_ARCSEC * (g->distance_mm - g->radius_mm);
+  guint level = 0;
+  while (pixel_mm * 2.0 < FINE * cell_mm && tf_frame_get_level (frame, level + 1, NULL, NULL) != NULL)
+    {
+      pixel_mm *= 2.0;
+      level++;
+    }
+  double factor = exp2 (level);
+  pass->pixels = tf_frame_get_level (frame, level, &pass->width, &pass->height);
+  pass->geometry = *g;
+  pass->geometry.width = pass->width;
+  pass->geometry.height = pass->height;
+  for (guint k = 0; k < 2; k++)
+    {
+      pass->geometry.crpix[k] = (g->crpix[k] - 0.5) / factor + 0.5;
+      for (guint j = 0; j < 2; j++)
+        pass->geometry.cd[k][j] = g->cd[k][j] * factor;
+    }
+  tf_geometry_make (&pass->geometry);
+}
+
+static void
+add_stripes (float *sums, gsize cells)
+{
+  for (guint s = 1; s < STRIPES; s++)
+    for (gsize k = 0; k < cells; k++)
+      sums[k] += sums[s * cells + k];
+}
+
+void
+tf_hint_blur (float *values, float *room, guint width, guint height, double sigma)
+{
+  enum { MAX = 24 };
+  float kernel[2 * MAX + 1];
+  int reach = MIN (MAX, (int)ceil (4.0 * sigma));
+  double sum = 0.0;
+  for (int k = -reach; k <= reach; k++)
+    sum += exp (-0.5 * k * k / (sigma * sigma));
+  for (int k = -reach; k <= reach; k++)
+    kernel[k + reach] = (float)(exp (-0.5 * k * k / (sigma * sigma)) / sum);
+  memset (room, 0, (gsize)width * height * sizeof *room);
+  for (int y = 0; y < (int)height; y++)
+    for (int k = -reach; k <= reach; k++)
+      {
+        const float *row = values + (gsize)y * width;
+        float *to = room + (gsize)y * width, c = kernel[k + reach];
+        for (int x = MAX (0, -k); x < MIN ((int)width, (int)width - k); x++)
+          to[x] += c * row[x + k];
+      }
+  memset (values, 0, (gsize)width * height * sizeof *values);
+  for (int y = 0; y < (int)height; y++)
+    for (int k = MAX (-reach, -y); k <= MIN (reach, (int)height - 1 - y); k++)
+      {
+        const float *row = room + (gsize)(y + k) * width;
+        float *to = values + (gsize)y * width, c = kernel[k + reach];
+        for (guint x = 0; x < width; x++)
+          to[x] += c * row[x];
+      }
+}
+
+void
+tf_hint_grid_unit (const TfHintGrid *g, double x, double y, double unit[3])
+{
+  double u = (x - 0.5 * g->n) * g->cell_mm / g->radius_mm, v = (y - 0.5 * g->n) * g->cell_mm / g->radius_mm;
+  double r2 = u * u + v * v, along = 1.0 - 0.5 * r2, across = sqrt (MAX (0.0, 1.0 - 0.25 * r2));
+  for (guint k = 0; k < 3; k++)
+    unit[k] = along * g->centre[k] + across * (u * g->west[k] + v * g->north[k]);
+}
+
+/* The exact cosine for an observer at a finite distance, as everywhere. */
+static void
+fill_mu (TfHintGrid *g, const TfGeometry *geometry)
+{
+  double d = geometry->distance_mm, r = geometry->radius_mm;
+  for (guint y = 0; y < g->n; y++)
+    for (guint x = 0; x < g->n; x++)
+      {
+        double unit[3];
+        tf_hint_grid_unit (g, x + 0.5, y + 0.5, unit);
+        double c = dot (unit, g->centre);
+        g->mu[(gsize)y * g->n + x] = (float)((d * c - r) / sqrt (d * d + r * r - 2.0 * d * r * c));
+      }
+}
+
+static void
+divide (TfHintGrid *g, float *flux, float *area)
+{
+  gsize cells = (gsize)g->n * g->n;
+  double least = COVERED * g->cell_mm * g->cell_mm;
+  for (gsize k = 0; k < cells; k++)
+    g->field[k] = g->mu[k] >= MU_CELL && area[k] > least ? flux[k] / area[k] : NAN;
+}
+
+/* -- noise ------------------------------------------------------------------------------------------------- */
+
+static gint
+compare (gconstpointer a, gconstpointer b)
+{
+  float x = *(const float *)a, y = *(const float *)b;
+  return (x > y) - (x < y);
+}
+
+/* 1.4826 MAD about 0, clipped at 3 sigma until it stands. */
+static double
+clipped_mad (GArray *sizes)
+{
+  float *v = (float *)(void *)sizes->data;
+  guint n = sizes->len;
+  double sigma = NAN;
+  qsort (v, n, sizeof *v, compare);
+  for (guint pass = 0; pass < CLIPS && n > 0; pass++)
+    {
+      sigma = 1.4826 * v[n / 2];
+      while (n > 1 && v[n - 1] > 3.0 * sigma)
+        n--;
+    }
+  return sigma;
+}
+
+static guint
+ring_of (double mu)
+{
+  return (guint)CLAMP ((mu - MU_CELL) / (1.0 - MU_CELL) * RINGS, 0.0, RINGS - 1.0);
+}
+
+/* Rings with too few cells take the value of the nearest good one. */
+static void
+fill_rings (const TfHintGrid *g, double sigma[RINGS])
+{
+  GArray *sizes[RINGS];
+  for (guint r = 0; r < RINGS; r++)
+    sizes[r] = g_array_new (FALSE, FALSE, sizeof (float));
+  for (gsize k = 0; k < (gsize)g->n * g->n; k++)
+    if (isfinite (g->field[k]))
+      g_array_append_val (sizes[ring_of (g->mu[k])], ((float){ fabsf (g->field[k]) }));
+  for (guint r = 0; r < RINGS; r++)
+    {
+      sigma[r] = sizes[r]->len >= RING_CELLS ? clipped_mad (sizes[r]) : (double)NAN;
+      g_array_unref (sizes[r]);
+    }
+  for (guint step = 1; step < RINGS; step++)
+    for (guint r = 0; r < RINGS; r++)
+      if (isnan (sigma[r]))
+        {
+          if (r + step < RINGS && !isnan (sigma[r + step]))
+            sigma[r] = sigma[r + step];
+          else if (r >= step && !isnan (sigma[r - step]))
+            sigma[r] = sigma[r - step];
+        }
+}
+
+static double
+sigma_at (const double sigma[RINGS], double mu)
+{
+  double at = (mu - MU_CELL) / (1.0 - MU_CELL) * RINGS - 0.5;
+  at = CLAMP (at, 0.0, RINGS - 1.0);
+  guint k = MIN ((guint)at, RINGS - 2);
+  return sigma[k] + (at - k) * (sigma[k + 1] - sigma[k]);
+}
+
+static void
+fill_levels (TfHintGrid *g, const TfHintParams *p)
+{
+  double sigma[RINGS];
+  gsize there = 0, above = 0;
+  fill_rings (g, sigma);
+  for (gsize k = 0; k < (gsize)g->n * g->n; k++)
+    {
+      double low = MAX (p->low_sigma * sigma_at (sigma, g->mu[k]), p->low_gauss);
+      g->low[k] = (float)(isnan (low) ? p->low_gauss : low);
+      g->high[k] = (float)(g->low[k] * p->high_sigma / p->low_sigma);
+      there += isfinite (g->field[k]);
+      above += fabsf (g->field[k]) >= (float)p->low_gauss;
+    }
+  g->active = (double)above > ACTIVE_SHARE * (double)there;
+  for (gsize k = 0; k < (gsize)g->n * g->n && g->active; k++)
+    {
+      g->low[k] = (float)p->low_gauss;
+      g->high[k] = (float)(p->low_gauss * p->high_sigma / p->low_sigma);
+    }
+}
+
+/* -- all of it --------------------------------------------------------------------------------------------- */
+
+static void
+set_plane (TfHintGrid *g, const TfGeometry *geometry, const TfHintParams *p)
+{
+  double lon = tf_geometry_central_carrington (geometry), lat = geometry->observer.b0_deg * TF_DEG;
+  g->cell_mm = p->cell_mm;
+  g->radius_mm = geometry->radius_mm;
+  /* 2 sin (psi / 2) at mu 0.21 and a margin */
+  g->n = 2 * (guint)ceil (1.32 * g->radius_mm / g->cell_mm);
+  tf_sphere_unit (lon, geometry->observer.b0_deg, g->centre);
+  tf_sphere_unit (lon + 90.0, 0.0, g->west);
+  g->north[0] = -sin (lat) * cos (lon * TF_DEG);
+  g->north[1] = -sin (lat) * sin (lon * TF_DEG);
+  g->north[2] = cos (lat);
+}
+
+TfHintGrid *
+tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale, const TfWork *work)
+{
+  TfHintGrid *g = g_new0 (TfHintGrid, 1);
+  const TfGeometry *geometry = tf_frame_get_geometry (frame);
+  set_plane (g, geometry, params);
+  gsize cells = (gsize)g->n * g->n;
+  Pass pass = { .grid = g, .scale = scale, .radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL };
+  choose_level (&pass, frame, params->cell_mm);
+  pass.flux = g_new0 (float, STRIPES * cells);
+  pass.area = g_new0 (float, STRIPES * cells);
+  g->field = g_new (float, cells);
+  g->mu = g_new (float, cells);
+  g->low = g_new (float, cells);
+  g->high = g_new (float, cells);
+  gboolean done = tf_bands_run (work, STRIPES * TF_BAND_ROWS, do_stripe, &pass);
+  add_stripes (pass.flux, cells);
+  add_stripes (pass.area, cells);
+  fill_mu (g, geometry);
+  tf_hint_blur (pass.flux, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
+  tf_hint_blur (pass.area, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
+  divide (g, pass.flux, pass.area);
+  fill_levels (g, params);
+  g_free (pass.flux);
+  g_free (pass.area);
+  if (!done)
+    g_clear_pointer (&g, tf_hint_grid_free);
+  return g;
+}
+
+void
+tf_hint_grid_free (TfHintGrid *grid)
+{
+  if (grid == NULL)
+    return;
+  g_free (grid->field);
+  g_free (grid->mu);
+  g_free (grid->low);
+  g_free (grid->high);
+  g_free (grid);
+}

@@ -1,0 +1,245 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+
+/* Pieces are joined to regions, best pair first, by how much of each other's flux they balance, by the gap between them
+ * and by how long a region of their flux may plausibly be. Nothing here knows hemisphere, cycle or polarity order: a frame with all signs
+ * turned gives the same hints. Numbers and what each step is good for: the study of hints in the design notes. */
+
+#include <math.h>
+
+#include "tf-constants.h"
+#include "tf-hint-private.h"
+
+static const double LENGTH_MM = 125.0, LENGTH_LEAST_MM = 40.0, LENGTH_MOST_MM = 160.0, LENGTH_FLUX_MX = 1e22;
+static const double BALANCE = 0.05;            /* gain from which a pair balances */
+static const double GAP_MM = 15.0, GAP_SAME_MM = 14.0;
+static const double SAME_WEIGHT = 0.5;         /* of pairs that do not balance */
+static const double NEST_WEAKER = 0.30, NEST_FLUX_MX = 1e21, NEST_SMALL = 0.05;
+static const double SINGLE = 0.15;             /* weaker share below which a cluster is one-signed */
+static const double TIDY_GAP_MM = 12.0, TIDY_WEAKER = 0.25, TIDY_LENGTH = 1.25;
+static const double PLAGE_GAP_MM = 30.0, PLAGE_CENTRES_MM = 120.0;
+
+static TfHintCluster *
+cluster_at (const TfHintPieces *pieces, guint k)
+{
+  return &g_array_index (pieces->clusters, TfHintCluster, k);
+}
+
+double
+tf_hint_length (double total_mx)
+{
+  return CLAMP (LENGTH_MM * pow (total_mx / LENGTH_FLUX_MX, 0.25), LENGTH_LEAST_MM, LENGTH_MOST_MM);
+}
+
+static double
+angle_between (const double a[3], const double b[3])
+{
+  double cross[3] = { a[1] * b[2] - a[2] * b[1], a[2] * b[0] - a[0] * b[2], a[0] * b[1] - a[1] * b[0] };
+  return atan2 (sqrt (cross[0] * cross[0] + cross[1] * cross[1] + cross[2] * cross[2]),
+                a[0] * b[0] + a[1] * b[1] + a[2] * b[2]);
+}
+
+double
+tf_hint_separation (const TfHintCluster *cluster, double radius_mm)
+{
+  if (!(cluster->flux[0] > 0.0) || !(cluster->flux[1] > 0.0))
+    return 0.0;
+  return radius_mm * angle_between (cluster->place[0], cluster->place[1]);
+}
+
+void
+tf_hint_centre (const TfHintCluster *cluster, double unit[3])
+{
+  double length = 0.0;
+  for (guint k = 0; k < 3; k++)
+    {
+      unit[k] = cluster->place[0][k] + cluster->place[1][k];
+      length += unit[k] * unit[k];
+    }
+  for (guint k = 0; k < 3; k++)
+    unit[k] /= sqrt (length);
+}
+
+static double
+centre_distance (const TfHintCluster *a, const TfHintCluster *b, double radius_mm)
+{
+  double p[3], q[3];
+  tf_hint_centre (a, p);
+  tf_hint_centre (b, q);
+  return radius_mm * angle_between (p, q);
+}
+
+static TfHintCluster
+sum_of (const TfHintCluster *a, const TfHintCluster *b)
+{
+  TfHintCluster sum = *a;
+  for (guint sign = 0; sign < 2; sign++)
+    {
+      sum.flux[sign] += b->flux[sign];
+      for (guint k = 0; k < 3; k++)
+        sum.place[sign][k] += b->place[sign][k];
+    }
+  sum.nest = a->nest || b->nest;
+  return sum;
+}
+
+static double
+net (const TfHintCluster *cluster)
+{
+  return fabs (cluster->flux[0] - cluster->flux[1]);
+}
+
+/* Two regions that stand for themselves are never made one, however near. */
+static gboolean
+is_nest (const TfHintCluster *a, const TfHintCluster *b)
+{
+  double ta = tf_hint_total (a), tb = tf_hint_total (b);
+  return tf_hint_weaker (a) >= NEST_WEAKER && tf_hint_weaker (b) >= NEST_WEAKER && MIN (ta, tb) > NEST_FLUX_MX
+         && MIN (ta, tb) >= NEST_SMALL * MAX (ta, tb);
+}
+
+static double
+score_pair (const TfHintPieces *pieces, const TfHintPair *pair)
+{
+  const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
+  double radius = pieces->grid->radius_mm, ta = tf_hint_total (a), tb = tf_hint_total (b);
+  TfHintCluster sum = sum_of (a, b);
+  double length = tf_hint_length (ta + tb), distance = centre_distance (a, b, radius);
+  if (tf_hint_separation (&sum, radius) > length || distance > 1.3 * length || is_nest (a, b))
+    return 0.0;
+  double gain = (net (a) + net (b) - net (&sum)) / (2.0 * MIN (ta, tb));
+  double near = exp (-(distance / length) * (distance / length));
+  if (gain >= BALANCE)
+    return gain * exp (-pair->gap_mm / GAP_MM) * near;
+  double score = SAME_WEIGHT * exp (-pair->gap_mm / GAP_SAME_MM) * near;
+  const TfHintCluster *larger = ta >= tb ? a : b;
+  gboolean grows = net (&sum) / (ta + tb) > net (larger) / tf_hint_total (larger);
+  return grows && MIN (ta, tb) >= 0.25 * MAX (ta, tb) ? 0.5 * score : score;
+}
+
+/* Cluster b goes into a; pairs of b become pairs of a, doubled ones keep the smaller gap. */
+static void
+merge (TfHintPieces *pieces, guint a, guint b)
+{
+  GArray *pairs = pieces->pairs;
+  *cluster_at (pieces, a) = sum_of (cluster_at (pieces, a), cluster_at (pieces, b));
+  cluster_at (pieces, b)->into = (int)a;
+  for (guint k = pairs->len; k-- > 0;)
+    {
+      TfHintPair *pair = &g_array_index (pairs, TfHintPair, k);
+      if (pair->a == b)
+        pair->a = a;
+      if (pair->b == b)
+        pair->b = a;
+      if (pair->a == pair->b)
+        g_array_remove_index_fast (pairs, k);
+    }
+  for (guint k = pairs->len; k-- > 0;)
+    {
+      TfHintPair *pair = &g_array_index (pairs, TfHintPair, k);
+      for (guint j = 0; j < k; j++)
+        {
+          TfHintPair *other = &g_array_index (pairs, TfHintPair, j);
+          if (MIN (pair->a, pair->b) != MIN (other->a, other->b) || MAX (pair->a, pair->b) != MAX (other->a, other->b))
+            continue;
+          other->gap_mm = MIN (other->gap_mm, pair->gap_mm);
+          g_array_remove_index_fast (pairs, k);
+          break;
+        }
+    }
+}
+
+static void
+rescore (TfHintPieces *pieces, int only)
+{
+  for (guint k = 0; k < pieces->pairs->len; k++)
+    {
+      TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
+      if (only < 0 || pair->a == (guint)only || pair->b == (guint)only)
+        pair->score = score_pair (pieces, pair);
+    }
+}
+
+static void
+join_by_score (TfHintPieces *pieces)
+{
+  rescore (pieces, -1);
+  for (;;)
+    {
+      TfHintPair best = { 0 };
+      for (guint k = 0; k < pieces->pairs->len; k++)
+        {
+          const TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
+          if (pair->score > best.score)
+            best = *pair;
+        }
+      if (!(best.score >= pieces->params->score_min))
+        return;
+      merge (pieces, MIN (best.a, best.b), MAX (best.a, best.b));
+      rescore (pieces, (int)MIN (best.a, best.b));
+    }
+}
+
+/* -- tidying ----------------------------------------------------------------------------------------------- */
+
+static gboolean
+leftover_fits (const TfHintPieces *pieces, const TfHintPair *pair)
+{
+  const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
+  gboolean one = tf_hint_weaker (a) < SINGLE, two = tf_hint_weaker (b) < SINGLE;
+  if (one == two || pair->gap_mm > TIDY_GAP_MM)
+    return FALSE;
+  TfHintCluster sum = sum_of (a, b);
+  return tf_hint_weaker (&sum) >= TIDY_WEAKER
+         && tf_hint_separation (&sum, pieces->grid->radius_mm) <= TIDY_LENGTH * tf_hint_length (tf_hint_total (&sum));
+}
+
+static gboolean
+same_plage (const TfHintPieces *pieces, const TfHintPair *pair)
+{
+  const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
+  return tf_hint_weaker (a) < SINGLE && tf_hint_weaker (b) < SINGLE && pair->gap_mm <= PLAGE_GAP_MM
+         && (a->flux[0] > a->flux[1]) == (b->flux[0] > b->flux[1])
+         && centre_distance (a, b, pieces->grid->radius_mm) < PLAGE_CENTRES_MM;
+}
+
+/* Joins pairs that fit, smallest gap first, until none does. */
+static void
+tidy (TfHintPieces *pieces, gboolean (*fits) (const TfHintPieces *, const TfHintPair *))
+{
+  for (;;)
+    {
+      const TfHintPair *best = NULL;
+      for (guint k = 0; k < pieces->pairs->len; k++)
+        {
+          const TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
+          if ((best == NULL || pair->gap_mm < best->gap_mm) && fits (pieces, pair))
+            best = pair;
+        }
+      if (best == NULL)
+        return;
+      merge (pieces, MIN (best->a, best->b), MAX (best->a, best->b));
+    }
+}
+
+static void
+mark_nests (TfHintPieces *pieces)
+{
+  for (guint k = 0; k < pieces->pairs->len; k++)
+    {
+      const TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
+      TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
+      if (pair->gap_mm < GAP_MM && is_nest (a, b))
+        a->nest = b->nest = TRUE;
+    }
+}
+
+void
+tf_hint_join (TfHintPieces *pieces)
+{
+  join_by_score (pieces);
+  tidy (pieces, leftover_fits);
+  tidy (pieces, same_plage);
+  mark_nests (pieces);
+}

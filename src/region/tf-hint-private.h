@@ -1,0 +1,94 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* What the files of the hints share.
+ *
+ * The working grid is a square of cells in the Lambert azimuthal equal-area plane about the disk's centre: x west, y north, cell
+ * (n/2, n/2) at the centre; a round kernel stays nearly round and a cell's flux is its value times its area. Row-major, y * n + x.
+ */
+
+#include <glib.h>
+
+#include "tf-hint.h"
+
+G_BEGIN_DECLS
+
+typedef struct
+{
+  guint n;           /* cells a side */
+  double cell_mm;
+  double radius_mm;  /* of the Sun */
+  double centre[3], west[3], north[3]; /* Carrington frame */
+  float *field;      /* smoothed radial field, G; NaN: nothing there, or too near the limb */
+  float *mu;
+  float *low, *high; /* levels, G */
+  gboolean active;   /* sigma is from a frame that is mostly active */
+} TfHintGrid;
+
+/* A connected hill of one polarity, or what was joined of several. */
+typedef struct
+{
+  double flux[2];      /* Mx */
+  double place[2][3];  /* sum of flux * unit vector */
+  int into;            /* index of the cluster it was joined to; itself while it stands alone */
+  gboolean nest;       /* a neighbour was kept apart by the nest rule */
+} TfHintCluster;
+
+typedef struct
+{
+  guint a, b;       /* clusters */
+  double gap_mm;
+  double score;
+} TfHintPair;
+
+typedef struct
+{
+  const TfHintGrid *grid;
+  const TfHintParams *params;
+  gint32 *piece;    /* of each cell: index of its cluster, or -1 */
+  gint32 *nearest;  /* of each cell: the nearest piece, or -1 */
+  float *distance;  /* Mm to it */
+  GArray *clusters; /* TfHintCluster */
+  GArray *pairs;    /* TfHintPair */
+} TfHintPieces;
+
+/* tf-hint-grid.c */
+TfHintGrid *tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale, const TfWork *work);
+void tf_hint_grid_free (TfHintGrid *grid);
+/** tf_hint_grid_unit: direction of a point of the plane, in cells. */
+void tf_hint_grid_unit (const TfHintGrid *grid, double x, double y, double unit[3]);
+/** tf_hint_blur: Gaussian of @sigma cells over n x n values, in place; @room as large. Beyond the border is nothing. */
+void tf_hint_blur (float *values, float *room, guint width, guint height, double sigma);
+
+/* tf-hint-pieces.c: levels, hills, nearest pieces, neighbours */
+TfHintPieces *tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params);
+void tf_hint_pieces_free (TfHintPieces *pieces);
+double tf_hint_total (const TfHintCluster *cluster);
+double tf_hint_weaker (const TfHintCluster *cluster); /* share of the weaker polarity */
+guint tf_hint_root (const TfHintPieces *pieces, guint k);
+
+/* tf-hint-distance.c: exact Euclidean distance, separable; Felzenszwalb & Huttenlocher 2012, Theory of Computing 8, 415 */
+/** tf_hint_nearest: of each cell the label >= 0 nearest to it and the distance in cells. */
+void tf_hint_nearest (const gint32 *label, guint width, guint height, gint32 *nearest, float *distance);
+
+/* tf-hint-join.c */
+void tf_hint_join (TfHintPieces *pieces);
+double tf_hint_length (double total_mx);
+/** tf_hint_separation: of the two poles, Mm; 0 for one-signed ones. */
+double tf_hint_separation (const TfHintCluster *cluster, double radius_mm);
+/** tf_hint_centre: unit vector of the flux's centre. */
+void tf_hint_centre (const TfHintCluster *cluster, double unit[3]);
+
+/* tf-hint-outline.c */
+/** tf_hint_outline: (transfer full) (nullable): of the cluster with root @k. @edge: (out): touches cells without a value. */
+TfOutline *tf_hint_outline (const TfHintPieces *pieces, guint k, TfTime time, gboolean *edge);
+/* tf-hint-contour.c */
+/** tf_hint_contour: the longest closed line value = 0.5 through @values; points in cells, x then y; NULL when there is none. */
+GArray *tf_hint_contour (const float *values, guint width, guint height);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfHintGrid, tf_hint_grid_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfHintPieces, tf_hint_pieces_free)
+
+G_END_DECLS
