@@ -10,6 +10,7 @@
 
 #include "tf-constants.h"
 #include "tf-fits-private.h"
+#include "tf-witness.h"
 
 /* -- which picture of the file --------------------------------------------------------------- */
 
@@ -212,7 +213,7 @@ judge_missing (const float *pixels, TfFrameInfo *info)
   const TfGeometry *g = &info->geometry;
   double cx = 0, cy = 0, r = tf_geometry_disk_radius (g);
   gboolean disk = g->projection == TF_PROJECTION_TAN && tf_geometry_disk_centre (g, &cx, &cy);
-  guint n = 0, missing = 0, step = MAX (1, MAX (g->width, g->height) / 512);
+  guint n = 0, missing = 0, step = MAX (1, MAX (g->width, g->height) / 300);
   for (guint y = 0; y < g->height; y += step)
     for (guint x = 0; x < g->width; x += step)
       {
@@ -223,6 +224,16 @@ judge_missing (const float *pixels, TfFrameInfo *info)
       }
   if (n > 0 && missing > 0.001 * n)
     tf_notes_add (info->cautions, "missing-data", "d", 100.0 * missing / n);
+}
+
+static void
+judge_pixels (const float *pixels, TfFrameInfo *info)
+{
+  judge_missing (pixels, info);
+  if (info->kind != TF_KIND_DISK)
+    return;
+  TfLimbFit fit = tf_limb_fit (pixels, &info->geometry);
+  tf_limb_judge (&fit, &info->geometry, info->cautions);
 }
 
 /* -- opening --------------------------------------------------------------------------------- */
@@ -278,7 +289,7 @@ open_role (const char *path, const TfFrameSpec *spec, TfRole wanted, const TfWor
     }
   drop_fill (tf_pixels_get (pixels), info);
   if (wanted == TF_ROLE_FIELD)
-    judge_missing (tf_pixels_get (pixels), info);
+    judge_pixels (tf_pixels_get (pixels), info);
   return tf_frame_new_take (g_steal_pointer (&info), pixels, path, tf_fits_get_hdu (fits), work);
 }
 

@@ -14,7 +14,8 @@
 
 enum
 {
-  WANTED = 300000, /* pixels looked at */
+  WANTED = 300000, /* pixels looked at for sigma */
+  LOOKED_AT = 50000, /* and for the correlation */
   FEWEST = 60,     /* pixels that make a ring */
   REACH = 4,       /* longest lag of the autocorrelation, pixels */
   TURNS = 60,
@@ -271,7 +272,6 @@ lags_factor (const Lags *lags)
 static double
 measure_correlation (const float *pixels, const TfGeometry *g, const TfNoise *noise)
 {
-  enum { GROUPS = 24 };
   if (noise->n == 0 || !(noise->rings[noise->n - 1].gauss > 0))
     return 1;
   Lags lags = { 0 };
@@ -280,8 +280,8 @@ measure_correlation (const float *pixels, const TfGeometry *g, const TfNoise *no
   g_autofree float *memory = g_new (float, (gsize)(REACH + 1) * g->width);
   for (guint k = 0; k <= REACH; k++)
     rows[k] = memory + (gsize)k * g->width;
-  guint step = MAX (1, g->height / GROUPS);
-  for (guint y = step / 2; y < g->height; y += step)
+  guint groups = CLAMP (LOOKED_AT / g->width, 4, 32), step = MAX (REACH + 1, g->height / groups);
+  for (guint y = MIN (step / 2, g->height - 1); y < g->height; y += step)
     {
       guint n = MIN (REACH + 1, g->height - y);
       for (guint k = 0; k < n; k++)

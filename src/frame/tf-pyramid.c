@@ -13,55 +13,63 @@ enum
 /* One step: every box of 2 x 2 of the level below, weighted by how many frame pixels stand in each. */
 typedef struct
 {
-  const float *below, *below_weight; /* below_weight NULL: 1 for finite, 0 for NaN */
+  const float *below, *below_weight; /* below_weight NULL: 1 everywhere */
   guint below_width, below_height;
   float *mean, *weight;
   guint width;
 } Step;
 
-static inline void
-add (const Step *step, guint x, guint y, float *sum, float *weight)
+/* Full boxes of two rows, without a branch, so that it vectorises. A value that is not finite has no weight. */
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+first_boxes (const float *restrict a, const float *restrict b, guint n, float *restrict mean, float *restrict weight)
 {
-  gsize at = (gsize)y * step->below_width + x;
-  float value = step->below[at];
-  float w = step->below_weight != NULL ? step->below_weight[at] : 1.0f;
-  if (isfinite (value))
+  for (guint x = 0; x < n; x++)
     {
-      *sum += w * value;
-      *weight += w;
+      float p = a[2 * x], q = a[2 * x + 1], r = b[2 * x], s = b[2 * x + 1];
+      float wp = p - p <= 0 ? 1.0f : 0.0f, wq = q - q <= 0 ? 1.0f : 0.0f;
+      float wr = r - r <= 0 ? 1.0f : 0.0f, ws = s - s <= 0 ? 1.0f : 0.0f;
+      float sum = (wp > 0 ? p : 0.0f) + (wq > 0 ? q : 0.0f) + (wr > 0 ? r : 0.0f) + (ws > 0 ? s : 0.0f);
+      float count = wp + wq + wr + ws;
+      weight[x] = count;
+      mean[x] = count > 0 ? sum / count : NAN;
     }
 }
 
-static inline void
-box (const Step *step, guint x, guint y)
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+further_boxes (const float *restrict a, const float *restrict b, const float *restrict wa, const float *restrict wb, guint n,
+               float *restrict mean, float *restrict weight)
+{
+  for (guint x = 0; x < n; x++)
+    {
+      float wp = wa[2 * x], wq = wa[2 * x + 1], wr = wb[2 * x], ws = wb[2 * x + 1];
+      float p = wp > 0 ? a[2 * x] : 0.0f, q = wq > 0 ? a[2 * x + 1] : 0.0f;
+      float r = wr > 0 ? b[2 * x] : 0.0f, s = ws > 0 ? b[2 * x + 1] : 0.0f;
+      float count = wp + wq + wr + ws;
+      weight[x] = count;
+      mean[x] = count > 0 ? (wp * p + wq * q + wr * r + ws * s) / count : NAN;
+    }
+}
+
+/* A box at the right or top edge, of what there is. */
+static void
+edge_box (const Step *step, guint x, guint y)
 {
   float sum = 0, weight = 0;
   guint x1 = MIN (2 * x + 2, step->below_width), y1 = MIN (2 * y + 2, step->below_height);
   for (guint v = 2 * y; v < y1; v++)
     for (guint u = 2 * x; u < x1; u++)
-      add (step, u, v, &sum, &weight);
+      {
+        gsize at = (gsize)v * step->below_width + u;
+        float w = step->below_weight != NULL ? step->below_weight[at] : 1.0f;
+        if (isfinite (step->below[at]))
+          {
+            sum += w * step->below[at];
+            weight += w;
+          }
+      }
   gsize at = (gsize)y * step->width + x;
   step->mean[at] = weight > 0 ? sum / weight : NAN;
   step->weight[at] = weight;
-}
-
-/* Full boxes of the frame itself, without a branch, so that it vectorises. */
-__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-first_row (const float *a, const float *b, guint n, float *mean, float *weight)
-{
-  for (guint x = 0; x < n; x++)
-    {
-      float v[4] = { a[2 * x], a[2 * x + 1], b[2 * x], b[2 * x + 1] };
-      float sum = 0, count = 0;
-      for (guint k = 0; k < 4; k++)
-        {
-          gboolean good = v[k] - v[k] <= 0; /* FALSE for NaN and infinities */
-          sum += good ? v[k] : 0.0f;
-          count += good ? 1.0f : 0.0f;
-        }
-      mean[x] = count > 0 ? sum / count : NAN;
-      weight[x] = count;
-    }
 }
 
 static void
@@ -70,16 +78,16 @@ step_rows (guint band, guint first, guint n, guint worker, gpointer data)
   const Step *step = data;
   for (guint y = first; y < first + n; y++)
     {
-      guint done = 0;
-      if (step->below_weight == NULL && 2 * y + 1 < step->below_height)
-        {
-          const float *a = step->below + (gsize)2 * y * step->below_width;
-          gsize at = (gsize)y * step->width;
-          done = step->below_width / 2;
-          first_row (a, a + step->below_width, done, step->mean + at, step->weight + at);
-        }
+      gsize at = (gsize)y * step->width, below = (gsize)2 * y * step->below_width;
+      guint done = 2 * y + 1 < step->below_height ? step->below_width / 2 : 0;
+      const float *a = step->below + below, *w = step->below_weight;
+      if (done > 0 && w == NULL)
+        first_boxes (a, a + step->below_width, done, step->mean + at, step->weight + at);
+      else if (done > 0)
+        further_boxes (a, a + step->below_width, w + below, w + below + step->below_width, done, step->mean + at,
+                       step->weight + at);
       for (guint x = done; x < step->width; x++)
-        box (step, x, y);
+        edge_box (step, x, y);
     }
 }
 

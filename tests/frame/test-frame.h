@@ -6,6 +6,9 @@
 #include "tf-frame.h"
 
 void add_header_tests (void);
+void add_picture_tests (void);
+void add_pixel_tests (void);
+void add_witness_tests (void);
 void add_write_tests (void);
 
 /** shared_data: (transfer full): path of a real file; NULL when the data are not there. TF_SHARED_DATA overrides. */

@@ -1,0 +1,222 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "test-frame.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "tf-check.h"
+#include "tf-constants.h"
+#include "tf-frame-write.h"
+
+enum
+{
+  SIDE = 512
+};
+
+/* Noise of 12 (1 + (1 - mu)) G; with @active, fields of 20 to 1500 G over a third of the activity belts. */
+static float *
+noisy_disk (const TfGeometry *g, guint32 seed, gboolean active)
+{
+  g_autoptr (GRand) chance = g_rand_new_with_seed (seed);
+  float *pixels = g_new (float, (gsize)g->width * g->height);
+  for (guint k = 0; k < g->width * g->height; k++)
+    {
+      TfPlace p;
+      gboolean on = tf_geometry_pixel_to_sun (g, k % g->width + 1.0, k / g->width + 1.0, &p);
+      double field = 0;
+      if (active && on && fabs (fabs (p.lat_deg) - 20) < 14 && sin (p.cmd_deg * 8 * TF_DEG) + 0.4 * sin (p.lat_deg * 0.9) > 0.6)
+        field = (g_rand_boolean (chance) ? 1 : -1) * 20 * exp (4.3 * g_rand_double (chance));
+      pixels[k] = on ? (float)(field + 12 * (2 - p.mu) * normal (chance)) : NAN;
+    }
+  return pixels;
+}
+
+static void
+check_noise (gboolean active, guint32 seed)
+{
+  TfFrameInfo *info = disk_info (SIDE, 240, 20);
+  g_autofree float *pixels = noisy_disk (&info->geometry, seed, active);
+  g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
+  guint n = 0;
+  const TfNoiseRing *rings = tf_frame_get_noise (frame, &n);
+  g_assert_cmpuint (n, >=, 8);
+  for (guint k = 1; k < n; k++)
+    g_assert_cmpfloat (rings[k].mu, >, rings[k - 1].mu);
+  for (double mu = 0.2; mu < 0.96; mu += 0.15)
+    tf_check_near ("sigma within 5 %", tf_frame_noise_at (frame, mu) / (12 * (2 - mu)), 1, 0.05);
+  tf_check_near ("held at the end", tf_frame_noise_at (frame, 1.0), rings[n - 1].gauss, 1e-9);
+  tf_check_nan ("no mu, no sigma", tf_frame_noise_at (frame, NAN));
+  tf_check_near ("independent pixels", tf_frame_noise_correlation (frame), 1, 0.1);
+}
+
+static void
+test_noise (void)
+{
+  for (guint32 seed = 1; seed < 4; seed++)
+    {
+      check_noise (FALSE, seed);
+      check_noise (TRUE, seed);
+    }
+}
+
+/* White noise smoothed by a Gaussian of 0.7 pixels: the variance of a large sum is that of the unsmoothed pixels, so the
+ * factor is 1 / sum of the squared kernel. */
+static void
+test_correlation (void)
+{
+  double kernel[7], total = 0, squares = 0;
+  for (int k = 0; k < 7; k++)
+    {
+      kernel[k] = exp (-0.5 * (k - 3) * (k - 3) / (0.7 * 0.7));
+      total += kernel[k];
+    }
+  for (int k = 0; k < 7; k++)
+    {
+      kernel[k] /= total;
+      squares += kernel[k] * kernel[k];
+    }
+  TfFrameInfo *info = disk_info (SIDE, 240, 0);
+  g_autoptr (GRand) chance = g_rand_new_with_seed (9);
+  g_autofree float *raw = g_new (float, SIDE * SIDE), *rows = g_new0 (float, SIDE * SIDE), *out = g_new0 (float, SIDE * SIDE);
+  for (guint k = 0; k < SIDE * SIDE; k++)
+    raw[k] = (float)(20 * normal (chance));
+  for (guint k = 3; k < SIDE * SIDE - 3; k++)
+    for (int j = -3; j <= 3; j++)
+      rows[k] += (float)kernel[j + 3] * raw[(int)k + j];
+  for (guint k = 3 * SIDE; k < SIDE * (SIDE - 3); k++)
+    for (int j = -3; j <= 3; j++)
+      out[k] += (float)kernel[j + 3] * rows[(int)k + j * SIDE];
+  g_autoptr (TfFrame) frame = tf_frame_new (info, out, NULL);
+  double expected = 1 / (squares * squares);
+  tf_check_near ("smoothed pixels", tf_frame_noise_correlation (frame) / expected, 1, 0.1);
+}
+
+static void
+test_no_noise (void)
+{
+  TfFrameInfo *info = disk_info (100, 45, 0);
+  g_autofree float *pixels = g_new0 (float, 100 * 100);
+  pixels[5050] = 100;
+  g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
+  tf_check_near ("a frame without noise", tf_frame_noise_at (frame, 0.5), 0, 0);
+  TfFrameInfo *empty = disk_info (100, 45, 0);
+  for (guint k = 0; k < 100 * 100; k++)
+    pixels[k] = NAN;
+  g_autoptr (TfFrame) nothing = tf_frame_new (empty, pixels, NULL);
+  tf_check_nan ("a frame without values", tf_frame_noise_at (nothing, 0.5));
+  tf_check_near ("its correlation", tf_frame_noise_correlation (nothing), 1, 0);
+}
+
+/* Every level's pixel is the mean of the finite frame pixels under it, also where the sides are odd. */
+static void
+test_pyramid (void)
+{
+  enum { W = 301, H = 203 };
+  const char *text = "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\nCRPIX1  = 100\nCRPIX2  = 90\n"
+                     "CRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 2\nCDELT2  = 2\nDATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\n";
+  g_autoptr (TfHeader) header = tf_header_read (text, -1);
+  g_autoptr (GRand) chance = g_rand_new_with_seed (2);
+  g_autofree float *pixels = g_new (float, W * H);
+  for (guint k = 0; k < W * H; k++)
+    pixels[k] = g_rand_int_range (chance, 0, 3) == 0 || (k % W < 40 && k / W < 40) ? NAN : (float)g_rand_double_range (chance, -100, 100);
+  g_autoptr (TfFrame) frame = tf_frame_new (tf_frame_info_read (header, W, H), pixels, NULL);
+  guint level = 0, w, h;
+  for (const float *data; (data = tf_frame_get_level (frame, level, &w, &h)) != NULL; level++)
+    {
+      guint size = 1u << level;
+      g_assert_cmpuint (w, ==, (W + size - 1) / size);
+      g_assert_cmpuint (h, ==, (H + size - 1) / size);
+      for (guint k = 0; k < w * h; k++)
+        {
+          double sum = 0, n = 0;
+          for (guint y = k / w * size; y < MIN ((k / w + 1) * size, H); y++)
+            for (guint x = k % w * size; x < MIN ((k % w + 1) * size, W); x++)
+              if (!isnan (pixels[y * W + x]))
+                {
+                  sum += (double)pixels[y * W + x];
+                  n++;
+                }
+          if (n > 0)
+            tf_check_near ("a box mean", (double)data[k], sum / n, 1e-4);
+          else
+            tf_check_nan ("an empty box", (double)data[k]);
+        }
+    }
+  g_assert_cmpuint (level, ==, 4);
+}
+
+/* One, two and three threads, with and without a pool whose memory is dirty: the same bits. */
+static void
+test_same_bits (void)
+{
+  TfFrameInfo *info = disk_info (SIDE, 240, 0);
+  g_autofree float *pixels = noisy_disk (&info->geometry, 5, TRUE);
+  tf_frame_info_free (info);
+  g_autoptr (TfHeader) header = tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+                                                "CRPIX1  = 256.5\nCRPIX2  = 256.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 4\nCDELT2  = 4\n"
+                                                "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'mT'\nCONTENT = 'MAGNETOGRAM'\n", -1);
+  g_autofree char *path = scratch_file ("threads.fits");
+  TfFrameWrite how = { .bitpix = 32, .bscale = 0.01, .blank = G_MININT32, .has_blank = TRUE, .compress = TRUE };
+  g_assert_true (tf_frame_write (path, header, pixels, SIDE, SIDE, &how, NULL));
+  g_autoptr (TfFrame) one = tf_frame_open (path, NULL, NULL, NULL);
+  g_assert_nonnull (one);
+  tf_check_near ("mT became G", tf_frame_value (one, 250, 250) / (10 * (double)pixels[249 * SIDE + 249]), 1, 1e-2);
+  g_autoptr (TfPool) pool = tf_pool_new ();
+  for (guint turn = 0; turn < 6; turn++)
+    {
+      g_autoptr (TfWorkers) workers = tf_workers_new (1 + turn % 3);
+      TfWork work = { .pool = pool, .workers = workers };
+      g_autoptr (TfFrame) other = tf_frame_open (path, NULL, &work, NULL);
+      g_assert_nonnull (other);
+      guint n, m, w, h;
+      for (guint level = 0; tf_frame_get_level (one, level, &w, &h) != NULL; level++)
+        g_assert_cmpmem (tf_frame_get_level (one, level, NULL, NULL), (gsize)w * h * 4,
+                         tf_frame_get_level (other, level, NULL, NULL), (gsize)w * h * 4);
+      const TfNoiseRing *a = tf_frame_get_noise (one, &n), *b = tf_frame_get_noise (other, &m);
+      g_assert_cmpuint (n, ==, m);
+      g_assert_cmpmem (a, n * sizeof *a, b, m * sizeof *b);
+    }
+}
+
+static void
+test_cancel (void)
+{
+  g_autofree char *path = scratch_file ("threads.fits");
+  g_autoptr (TfCancel) cancel = tf_cancel_new ();
+  g_autoptr (GError) error = NULL;
+  TfWork work = { .cancel = cancel };
+  tf_cancel_raise (cancel);
+  g_assert_null (tf_frame_open (path, NULL, &work, &error));
+  g_assert_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED);
+}
+
+/* A corrected geometry: same pixels, noise by the new rings; the first frame is as it was. */
+static void
+test_correction (void)
+{
+  TfFrameInfo *info = disk_info (SIDE, 240, 0);
+  g_autofree float *pixels = noisy_disk (&info->geometry, 6, FALSE);
+  TfGeometry turned;
+  g_assert_true (tf_geometry_make_disk (&turned, SIDE, SIDE, 250, 260, tf_geometry_scale_arcsec (&info->geometry), 90,
+                                        &info->geometry.observer, TF_RADIUS_MM));
+  g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
+  g_autoptr (TfFrame) other = tf_frame_with_geometry (frame, &turned, NULL);
+  g_assert_true (tf_frame_get_pixels (other) == tf_frame_get_pixels (frame));
+  tf_check_near ("the new turn", tf_geometry_north_angle (tf_frame_get_geometry (other)), 90, 1e-9);
+  tf_check_near ("the old turn", tf_geometry_north_angle (tf_frame_get_geometry (frame)), 0, 1e-9);
+  g_assert_cmpfloat (tf_frame_noise_at (other, 0.5), >, 0);
+}
+
+void
+add_pixel_tests (void)
+{
+  g_test_add_func ("/frame/noise/within-5-percent-also-on-an-active-disk", test_noise);
+  g_test_add_func ("/frame/noise/correlation-of-smoothed-noise", test_correlation);
+  g_test_add_func ("/frame/noise/none-and-nothing", test_no_noise);
+  g_test_add_func ("/frame/pyramid/box-means-know-nan-and-edges", test_pyramid);
+  g_test_add_func ("/frame/open/threads-and-pool-give-the-same-bits", test_same_bits);
+  g_test_add_func ("/frame/open/is-cancelled", test_cancel);
+  g_test_add_func ("/frame/open/a-corrected-geometry", test_correction);
+}
