@@ -48,6 +48,20 @@ TfLedger *tf_ledger_create (const char *path, char letter, GError **error);
 TfLedger *tf_ledger_open (const char *path, GError **error);
 /** tf_ledger_open_or_create: what `fill` does. */
 TfLedger *tf_ledger_open_or_create (const char *path, char letter, GError **error);
+
+/** TfLedgerHow: what the plain functions leave at its default; zero-initialise. */
+typedef struct
+{
+  gboolean create;              /* make it when it is not there */
+  gboolean must_be_new;         /* an error when it is */
+  char letter;                  /* of own region numbers, when made; 0: T */
+  const char *state_dir;        /* NULL: the user's state folder, tiltfield/replicas */
+  int busy_ms;                  /* how long a lock is waited for; 0: 10,000 */
+  gint64 (*now) (gpointer data); /* ms since 1970; NULL: the machine's clock */
+  gpointer now_data;
+} TfLedgerHow;
+TfLedger *tf_ledger_open_how (const char *path, const TfLedgerHow *how, GError **error);
+/** tf_ledger_close: NULL is allowed. */
 void tf_ledger_close (TfLedger *ledger);
 const char *tf_ledger_get_path (const TfLedger *ledger);
 /** tf_ledger_get_read_only: why nothing can be written, or NULL. Borrowed. */
@@ -200,7 +214,7 @@ typedef struct
   TfTime wall;
   char *kind;     /* "keep", "drop", "undo", ... */
   char *person;
-  char *subject;  /* text id */
+  char *subject;  /* hex ids of what it is about, one after the other */
   gboolean undone;
 } TfJournalEntry;
 void tf_journal_entry_free (TfJournalEntry *entry);

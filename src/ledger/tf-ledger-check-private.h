@@ -1,0 +1,13 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* The parts of check that work on a second database beside the ledger. */
+
+#include "tf-ledger-private.h"
+
+/* Whether tables, indexes and views are those this version makes. */
+gboolean tf_check_schema (TfLedger *ledger, TfNotes *findings, GError **error);
+/* Replays all acts into empty projections and compares, by ids that are the same everywhere. */
+gboolean tf_check_projections (TfLedger *ledger, TfNotes *findings, GError **error);

@@ -1,0 +1,122 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+
+/* The narrow table behind the wings: one row for every live mark and every open hint. A hint is open when it is of the newest
+ * rule run on its frame, no live mark came from it and nobody dropped it. */
+
+#include "tf-ledger-private.h"
+
+#include <math.h>
+
+#define MEASURED                                                                                                               \
+  " e.time, e.year, e.lat_deg, e.flux_unsigned_mx, e.axis_tilt_deg, e.mu, e.cmd_deg, e.separation_deg, e.imbalance,"           \
+  " e.leading, e.leading_sure,"
+#define MEASURED_2                                                                                                             \
+  " e.axis_tilt_deg IS NULL AND e.axis_bearing_deg IS NOT NULL,"                                                               \
+  " coalesce (1 IN (coalesce (e.witness_a, 0), coalesce (e.witness_b, 0), coalesce (e.witness_c, 0))"                          \
+  " AND -1 IN (coalesce (e.witness_a, 0), coalesce (e.witness_b, 0), coalesce (e.witness_c, 0)), 0)"
+#define MARK_POINTS                                                                                                            \
+  "SELECT 0, m.id, m.frame, m.region," MEASURED " e.leading = 0," MEASURED_2                                                   \
+  " FROM mark m JOIN measure e ON e.id = m.measure WHERE m.live = 1"
+#define HINT_POINTS                                                                                                            \
+  "SELECT 1, h.id, h.frame, 0," MEASURED " h.unipolar," MEASURED_2 " FROM hint h JOIN measure e ON e.id = h.measure"           \
+  " WHERE h.rule = (SELECT u.rule FROM run u WHERE u.frame = h.frame ORDER BY u.id DESC LIMIT 1)"                              \
+  " AND NOT EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id)"                                                              \
+  " AND NOT EXISTS (SELECT 1 FROM mark m WHERE m.hint = h.id AND m.live = 1)"
+
+const char tf_point_all_sql[] = MARK_POINTS " UNION ALL " HINT_POINTS;
+
+gboolean
+tf_point_refresh_mark (TfLedger *ledger, gint64 mark, GError **error)
+{
+  return tf_run (ledger, error, "DELETE FROM point WHERE hint = 0 AND mark = ?1", "i", mark)
+         && tf_run (ledger, error, "INSERT INTO point " MARK_POINTS " AND m.id = ?1", "i", mark);
+}
+
+gboolean
+tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error)
+{
+  return tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND mark = ?1", "i", hint)
+         && tf_run (ledger, error, "INSERT INTO point " HINT_POINTS " AND h.id = ?1", "i", hint);
+}
+
+/* All hints of a frame: after a rule was run. */
+gboolean
+tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error)
+{
+  return tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND frame = ?1", "i", frame)
+         && tf_run (ledger, error, "INSERT INTO point " HINT_POINTS " AND h.frame = ?1", "i", frame);
+}
+
+static void
+read_point (TfPoint *point, sqlite3_stmt *query)
+{
+  *point = (TfPoint){
+    .hint = (gint8)sqlite3_column_int (query, 0),
+    .mark = sqlite3_column_int64 (query, 1),
+    .frame = sqlite3_column_int64 (query, 2),
+    .region = (guint32)sqlite3_column_int64 (query, 3),
+    .time = { tf_column_double (query, 4) },
+    .year = tf_column_double (query, 5),
+    .lat_deg = (float)tf_column_double (query, 6),
+    .flux_mx = (float)tf_column_double (query, 7),
+    .tilt_deg = (float)tf_column_double (query, 8),
+    .mu = (float)tf_column_double (query, 9),
+    .cmd_deg = (float)tf_column_double (query, 10),
+    .separation_deg = (float)tf_column_double (query, 11),
+    .imbalance = (float)tf_column_double (query, 12),
+    .leading = (gint8)sqlite3_column_int (query, 13),
+    .leading_sure = (gint8)sqlite3_column_int (query, 14),
+    .unipolar = (gint8)sqlite3_column_int (query, 15),
+    .straddles = (gint8)sqlite3_column_int (query, 16),
+    .witnesses_differ = (gint8)sqlite3_column_int (query, 17),
+  };
+}
+
+static int
+compare_numbers (double a, double b)
+{
+  if (isnan (a) || isnan (b))
+    return isnan (a) - isnan (b);
+  return (a > b) - (a < b);
+}
+
+static int
+compare_points (gconstpointer a, gconstpointer b)
+{
+  const TfPoint *p = a, *q = b;
+  int by_time = compare_numbers (p->time.s, q->time.s);
+  if (by_time != 0)
+    return by_time;
+  return p->hint != q->hint ? p->hint - q->hint : (p->mark > q->mark) - (p->mark < q->mark);
+}
+
+static gboolean
+in_order (const GArray *points)
+{
+  for (guint k = 1; k < points->len; k++)
+    if (compare_points (&g_array_index (points, TfPoint, k - 1), &g_array_index (points, TfPoint, k)) > 0)
+      return FALSE;
+  return TRUE;
+}
+
+GArray *
+tf_ledger_points (TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, NULL);
+  g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (TfPoint));
+  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, "SELECT * FROM point", "");
+  int more = -1;
+  while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
+    {
+      TfPoint point;
+      read_point (&point, query);
+      g_array_append_val (points, point);
+    }
+  if (more != 0)
+    return NULL;
+  if (!in_order (points))
+    g_array_sort (points, compare_points);
+  return g_steal_pointer (&points);
+}
