@@ -60,6 +60,7 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   folder = g_dir_make_tmp ("tf-test-frame-XXXXXX", NULL);
   add_header_tests ();
+  add_dialect_tests ();
   add_write_tests ();
   add_pixel_tests ();
   add_picture_tests ();

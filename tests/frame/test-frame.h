@@ -5,6 +5,7 @@
 
 #include "tf-frame.h"
 
+void add_dialect_tests (void);
 void add_header_tests (void);
 void add_picture_tests (void);
 void add_pixel_tests (void);
