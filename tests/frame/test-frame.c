@@ -65,6 +65,8 @@ main (int argc, char **argv)
   add_pixel_tests ();
   add_picture_tests ();
   add_witness_tests ();
+  add_real_tests ();
+  add_conformance_tests ();
   int bad = g_test_run ();
   g_autoptr (GDir) dir = g_dir_open (folder, 0, NULL);
   for (const char *name; dir != NULL && (name = g_dir_read_name (dir)) != NULL;)
