@@ -60,8 +60,7 @@ def near(what, got, expected, tolerance):
     got, expected = np.asarray(got, float), np.asarray(expected, float)
     assert got.shape == expected.shape and got.size > 0, f"{what}: {got.shape} against {expected.shape}"
     worst = np.abs(got - expected)
-    lost = np.isnan(worst).sum()
-    assert (worst <= tolerance).all(), f"{what}: off by {np.nanmax(worst):.3g} ({lost} not numbers), allowed {tolerance}"
+    assert (worst <= tolerance).all(), f"{what}: off by {np.nanmax(worst):.3g} ({np.isnan(worst).sum()} not numbers), allowed {tolerance}"
     print(f"#   {what}: at most {worst.max():.2g} off ({got.size} compared)")
 
 

@@ -1,0 +1,258 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+/* What the plate draws: the picture, the overlay over it, the line in hand. */
+
+#include "tf-plate-private.h"
+
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-widget-style.h"
+
+static const guint32 ground = 0xff17191d;
+static const double label_share = 0.86;
+
+/* -- the picture ---------------------------------------------------------------------------------- */
+
+void
+tf_plate_draw_picture (TfPlate *self, int width, int height)
+{
+  TfFrame *frame = tf_session_get_frame (self->session);
+  int scale = gtk_widget_get_scale_factor (GTK_WIDGET (self));
+  gboolean fits = self->picture != NULL && cairo_image_surface_get_width (self->picture) == width * scale
+                  && cairo_image_surface_get_height (self->picture) == height * scale;
+  if (frame == NULL || (fits && !self->picture_stale))
+    return;
+  /* a new surface each time: the last one may still be held by a render node */
+  g_clear_pointer (&self->picture, cairo_surface_destroy);
+  self->picture = cairo_image_surface_create (CAIRO_FORMAT_RGB24, width * scale, height * scale);
+  TfView view = *tf_session_get_view (self->session);
+  view.width = width * scale;
+  view.height = height * scale;
+  view.zoom *= scale;
+  TfPaint paint = { .range_gauss = tf_session_get_range (self->session),
+                    .palette = tf_session_get_palette (self->session), .ground = ground, .dark = TRUE };
+  TfWork work = { .pool = tf_session_get_pool (self->session), .workers = tf_session_get_workers (self->session) };
+  guint32 *pixels = (guint32 *)(gpointer)cairo_image_surface_get_data (self->picture);
+  tf_picture_render (frame, &view, &paint, pixels, (guint)cairo_image_surface_get_stride (self->picture) / 4, &work);
+  cairo_surface_mark_dirty (self->picture);
+  self->picture_stale = FALSE;
+}
+
+/* -- the overlay ------------------------------------------------------------------------------------- */
+
+typedef struct
+{
+  const TfView *view;
+  const TfGeometry *geometry;
+  double shift; /* of the area against the view */
+} Projector;
+
+static gboolean
+project (double lon_deg, double lat_deg, double *x, double *y, gpointer data)
+{
+  const Projector *p = data;
+  if (!tf_view_from_sun (p->view, p->geometry, lon_deg, lat_deg, x, y))
+    return FALSE;
+  *x += p->shift;
+  *y += p->shift;
+  return TRUE;
+}
+
+static void
+set_poles (TfOverlayItem *item, const TfMeasure *m)
+{
+  gboolean two = m != NULL && m->leading_polarity != 0;
+  item->positive[0] = two ? m->positive.carrington_lon_deg : NAN;
+  item->positive[1] = two ? m->positive.lat_deg : NAN;
+  item->negative[0] = two ? m->negative.carrington_lon_deg : NAN;
+  item->negative[1] = two ? m->negative.lat_deg : NAN;
+}
+
+static GArray *
+collect_items (TfPlate *self)
+{
+  GArray *items = g_array_new (FALSE, TRUE, sizeof (TfOverlayItem));
+  GListModel *list = tf_session_get_regions (self->session);
+  TfOutline *draft = tf_session_get_draft (self->session);
+  TfRegionItem *chosen = tf_session_get_region (self->session);
+  guint n = g_list_model_get_n_items (list);
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) region = g_list_model_get_item (list, k);
+      const TfRow *row = tf_region_item_get_row (region);
+      TfOverlayItem item = { .outline = row->outline, .stroke = row->is_hint ? TF_STROKE_HINT : TF_STROKE_MARK,
+                             .chosen = region == chosen && draft == NULL, .label = tf_region_item_get_label (region),
+                             .verdict = (int)tf_region_item_get_verdict (region).kind };
+      set_poles (&item, &row->measure);
+      g_array_append_val (items, item);
+    }
+  if (draft != NULL)
+    {
+      TfOverlayItem item = { .outline = draft, .stroke = TF_STROKE_DRAFT, .chosen = TRUE, .label = _ ("draft"),
+                             .verdict = (int)tf_session_get_verdict (self->session).kind };
+      set_poles (&item, tf_session_get_measure (self->session));
+      g_array_append_val (items, item);
+    }
+  return items;
+}
+
+static void
+set_limb (TfOverlay *overlay, const Projector *p)
+{
+  double x, y;
+  overlay->limb_rx = NAN;
+  if (p->view->look != TF_LOOK_DISK || tf_geometry_is_map (p->geometry)
+      || !tf_geometry_disk_centre (p->geometry, &x, &y)
+      || !tf_view_from_pixel (p->view, p->geometry, x, y, &overlay->limb_x, &overlay->limb_y))
+    return;
+  overlay->limb_x += p->shift;
+  overlay->limb_y += p->shift;
+  overlay->limb_rx = overlay->limb_ry = tf_geometry_disk_radius (p->geometry) * p->view->zoom;
+}
+
+static TfOverlay
+overlay_for (TfPlate *self, Projector *p, GArray *items)
+{
+  TfOverlay overlay = { .project = project, .data = p,
+                        .central_carrington_deg = tf_geometry_central_carrington (p->geometry), .step_deg = 10,
+                        .graticule = TRUE, .outlines = TRUE, .axes = TRUE, .labels = TRUE, .on_dark = TRUE };
+  overlay.items = (const TfOverlayItem *)(gconstpointer)items->data;
+  overlay.n_items = items->len;
+  set_limb (&overlay, p);
+  return overlay;
+}
+
+static TfChartStyle
+overlay_style (TfPlate *self)
+{
+  TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
+  return tf_chart_style (TRUE, style.contrast, style.text_pt); /* the plate is dark in both styles */
+}
+
+static gboolean
+same_scale (const TfView *a, const TfView *b)
+{
+  return a->look == b->look && fabs (a->zoom - b->zoom) < 1e-9 && fabs (a->turn_deg - b->turn_deg) < 1e-9
+         && fabs (a->width - b->width) < 0.5 && fabs (a->height - b->height) < 0.5
+         && fabs (a->centre_lon_deg - b->centre_lon_deg) < 1e-9
+         && fabs (a->centre_lat_deg - b->centre_lat_deg) < 1e-9;
+}
+
+/* How far the picture moved since the overlay was made, view pixels. */
+static void
+moved_by (const TfPlate *self, double *dx, double *dy)
+{
+  const TfView *view = tf_session_get_view (self->session);
+  const TfGeometry *geometry = tf_frame_get_geometry (tf_session_get_frame (self->session));
+  double x0 = 0, y0 = 0, x1 = 0, y1 = 0;
+  *dx = *dy = 0;
+  if (view->look == TF_LOOK_DISK && tf_view_from_pixel (&self->overlay_view, geometry, 1, 1, &x0, &y0)
+      && tf_view_from_pixel (view, geometry, 1, 1, &x1, &y1))
+    {
+      *dx = x1 - x0;
+      *dy = y1 - y0;
+    }
+}
+
+static gboolean
+overlay_serves (TfPlate *self)
+{
+  double dx, dy;
+  const TfMeasure *measure = tf_session_get_draft (self->session) != NULL ? tf_session_get_measure (self->session) : NULL;
+  const void *now[3] = { tf_session_get_draft (self->session), tf_session_get_region (self->session), measure };
+  gboolean serves = self->overlay != NULL && !self->overlay_stale
+                    && same_scale (&self->overlay_view, tf_session_get_view (self->session));
+  for (guint k = 0; k < G_N_ELEMENTS (now); k++)
+    {
+      serves = serves && now[k] == self->overlay_of[k];
+      self->overlay_of[k] = now[k];
+    }
+  if (!serves)
+    return FALSE;
+  moved_by (self, &dx, &dy);
+  return fabs (dx) <= TF_PLATE_MARGIN && fabs (dy) <= TF_PLATE_MARGIN;
+}
+
+void
+tf_plate_draw_overlay (TfPlate *self, int width, int height)
+{
+  TfFrame *frame = tf_session_get_frame (self->session);
+  if (frame == NULL || overlay_serves (self))
+    return;
+  int scale = gtk_widget_get_scale_factor (GTK_WIDGET (self));
+  double full_width = width + 2.0 * TF_PLATE_MARGIN, full_height = height + 2.0 * TF_PLATE_MARGIN;
+  g_clear_pointer (&self->overlay, cairo_surface_destroy);
+  self->overlay_view = *tf_session_get_view (self->session);
+  self->overlay = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, (int)full_width * scale, (int)full_height * scale);
+  Projector p = { &self->overlay_view, tf_frame_get_geometry (frame), TF_PLATE_MARGIN };
+  g_autoptr (GArray) items = collect_items (self);
+  TfOverlay overlay = overlay_for (self, &p, items);
+  TfChartStyle style = overlay_style (self);
+  cairo_t *cr = cairo_create (self->overlay);
+  cairo_scale (cr, scale, scale);
+  tf_overlay_draw (cr, &overlay, &style, (TfArea){ 0, 0, full_width, full_height });
+  cairo_destroy (cr);
+  self->overlay_stale = FALSE;
+}
+
+void
+tf_plate_overlay_shift (TfPlate *self, double *dx, double *dy)
+{
+  moved_by (self, dx, dy);
+  *dx = round (*dx) - TF_PLATE_MARGIN;
+  *dy = round (*dy) - TF_PLATE_MARGIN;
+}
+
+/* -- the line in hand ---------------------------------------------------------------------------------- */
+
+typedef double Point[2];
+
+void
+tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
+{
+  const TfVertex *line;
+  guint n;
+  TfFrame *frame = tf_session_get_frame (self->session);
+  tf_session_get_line (self->session, &line, &n);
+  if (n == 0 || frame == NULL)
+    return;
+  Projector p = { tf_session_get_view (self->session), tf_frame_get_geometry (frame), 0 };
+  g_autofree Point *points = g_new (Point, (gsize)n + 1);
+  guint seen = 0;
+  for (guint k = 0; k < n; k++)
+    if (project (line[k].lon_deg, line[k].lat_deg, &points[seen][0], &points[seen][1], &p))
+      seen++;
+  if (self->pointer_in && tf_session_get_tool (self->session) == TF_TOOL_POLYGON)
+    {
+      points[seen][0] = self->pointer_x;
+      points[seen++][1] = self->pointer_y;
+    }
+  TfOverlayItem item = { .stroke = TF_STROKE_DRAFT, .chosen = TRUE, .verdict = -1 };
+  set_poles (&item, tf_session_get_measure (self->session));
+  TfOverlay overlay = { .project = project, .data = &p, .central_carrington_deg = NAN, .axes = TRUE, .items = &item,
+                        .n_items = 1, .limb_rx = NAN, .draft = (const Point *)points, .n_draft = seen,
+                        .on_dark = TRUE };
+  TfChartStyle style = overlay_style (self);
+  tf_overlay_draw (cr, &overlay, &style, (TfArea){ 0, 0, width, height });
+}
+
+TfRegionItem *
+tf_plate_item_at (TfPlate *self, double x, double y)
+{
+  TfFrame *frame = tf_session_get_frame (self->session);
+  if (frame == NULL)
+    return NULL;
+  const TfView *view = tf_session_get_view (self->session);
+  Projector p = { view, tf_frame_get_geometry (frame), 0 };
+  g_autoptr (GArray) items = collect_items (self);
+  GListModel *list = tf_session_get_regions (self->session);
+  TfOverlay overlay = overlay_for (self, &p, items);
+  overlay.n_items = g_list_model_get_n_items (list); /* the draft is not chosen by a click */
+  int hit = tf_overlay_hit (&overlay, (TfArea){ 0, 0, view->width, view->height }, x, y);
+  if (hit < 0)
+    return NULL;
+  g_autoptr (TfRegionItem) item = g_list_model_get_item (list, (guint)hit);
+  return item; /* the list holds it */
+}

@@ -1,0 +1,160 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-plate-pane.h"
+
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-widget-style.h"
+
+struct _TfPlatePane
+{
+  GtkWidget parent;
+  TfPlate *plate;
+  GtkLabel *readout, *trouble, *tool_words;
+  GtkWidget *tools, *over_progress, *trouble_box;
+  GtkLabel *progress_words;
+  GtkProgressBar *progress;
+  GtkMenuButton *range_button;
+  GtkScale *range;
+  GtkLabel *range_words;
+  TfSession *session;
+  gboolean setting;
+};
+
+G_DEFINE_FINAL_TYPE (TfPlatePane, tf_plate_pane, GTK_TYPE_WIDGET)
+
+static void
+view_changed (TfPlatePane *self)
+{
+  double gauss = tf_session_get_range (self->session);
+  g_autofree char *text = g_strdup_printf (_ ("± %.0f G"), gauss);
+  gtk_label_set_label (self->range_words, text);
+  self->setting = TRUE;
+  gtk_range_set_value (GTK_RANGE (self->range), log10 (gauss));
+  self->setting = FALSE;
+}
+
+static void
+range_moved (TfPlatePane *self)
+{
+  if (!self->setting && self->session != NULL)
+    tf_session_set_range (self->session, pow (10, gtk_range_get_value (GTK_RANGE (self->range))));
+}
+
+static char *
+format_range (GtkScale *scale, double value, TfPlatePane *self)
+{
+  return g_strdup_printf (_ ("± %.0f G"), pow (10, value));
+}
+
+static void
+readout_changed (TfPlatePane *self)
+{
+  gtk_label_set_label (self->readout, tf_plate_get_readout (self->plate));
+}
+
+static void
+status_changed (TfPlatePane *self)
+{
+  double share;
+  const char *words = tf_session_get_progress (self->session, &share);
+  gtk_widget_set_visible (self->over_progress, words != NULL);
+  if (words == NULL)
+    return;
+  gtk_label_set_label (self->progress_words, words);
+  if (share >= 0)
+    gtk_progress_bar_set_fraction (self->progress, share);
+  gtk_widget_set_visible (GTK_WIDGET (self->progress), share >= 0);
+}
+
+static void
+frame_changed (TfPlatePane *self)
+{
+  TfFrameItem *item = tf_session_get_frame_item (self->session);
+  const char *problem = tf_session_get_frame_problem (self->session);
+  const char *text = item == NULL ? _ ("Choose a frame in the roll, or drop frames here.") : problem;
+  gboolean open = tf_session_get_frame (self->session) != NULL;
+  gtk_widget_set_visible (self->trouble_box, text != NULL && !open && !tf_session_is_loading (self->session));
+  gtk_label_set_label (self->trouble, text != NULL ? text : "");
+  gtk_widget_set_visible (self->tools, open);
+  status_changed (self);
+}
+
+static void
+choice_changed (TfPlatePane *self)
+{
+  const char *words = NULL;
+  TfTool tool = tf_session_get_tool (self->session);
+  if (tool == TF_TOOL_OUTLINE)
+    words = _ ("Draw round the region with the button held. Esc puts the tool away.");
+  else if (tool == TF_TOOL_POLYGON)
+    words = _ ("Click the corners. Enter closes, Ctrl+Z takes the last one back, Esc puts the tool away.");
+  else if (tf_session_get_draft (self->session) != NULL)
+    words = _ ("A draft: K keeps it as a mark, Esc discards it.");
+  gtk_widget_set_visible (GTK_WIDGET (self->tool_words), words != NULL);
+  gtk_label_set_label (self->tool_words, words != NULL ? words : "");
+}
+
+void
+tf_plate_pane_set_session (TfPlatePane *self, TfSession *session)
+{
+  g_return_if_fail (TF_IS_PLATE_PANE (self) && TF_IS_SESSION (session) && self->session == NULL);
+  self->session = g_object_ref (session);
+  tf_plate_set_session (self->plate, session);
+  g_signal_connect_object (session, "view-changed", G_CALLBACK (view_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self, G_CONNECT_SWAPPED);
+  view_changed (self);
+  frame_changed (self);
+  choice_changed (self);
+}
+
+TfPlate *
+tf_plate_pane_get_plate (TfPlatePane *self)
+{
+  return self->plate;
+}
+
+static void
+dispose (GObject *object)
+{
+  TfPlatePane *self = TF_PLATE_PANE (object);
+  GtkWidget *child = gtk_widget_get_first_child (GTK_WIDGET (self));
+  g_clear_object (&self->session);
+  g_clear_pointer (&child, gtk_widget_unparent);
+  G_OBJECT_CLASS (tf_plate_pane_parent_class)->dispose (object);
+}
+
+static void
+tf_plate_pane_class_init (TfPlatePaneClass *klass)
+{
+  GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
+  G_OBJECT_CLASS (klass)->dispose = dispose;
+  g_type_ensure (TF_TYPE_PLATE);
+  gtk_widget_class_set_layout_manager_type (widget, GTK_TYPE_BIN_LAYOUT);
+  gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/plate-pane.ui");
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, plate);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, readout);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, tools);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, tool_words);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, trouble_box);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, trouble);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, over_progress);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, progress_words);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, progress);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, range_button);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, range_words);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, range);
+  gtk_widget_class_bind_template_callback (widget, range_moved);
+}
+
+static void
+tf_plate_pane_init (TfPlatePane *self)
+{
+  gtk_widget_init_template (GTK_WIDGET (self));
+  gtk_scale_set_format_value_func (self->range, (GtkScaleFormatValueFunc)(void (*) (void))format_range, self, NULL);
+  g_signal_connect_object (self->plate, "notify::readout", G_CALLBACK (readout_changed), self, G_CONNECT_SWAPPED);
+}

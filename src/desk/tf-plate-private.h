@@ -1,0 +1,45 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+#include "tf-overlay.h"
+#include "tf-plate.h"
+
+G_BEGIN_DECLS
+
+struct _TfPlate
+{
+  GtkWidget parent;
+  TfSession *session;
+
+  cairo_surface_t *picture;
+  gboolean picture_stale;
+  cairo_surface_t *overlay; /* larger than the widget by TF_PLATE_MARGIN on every side */
+  gboolean overlay_stale;
+  TfView overlay_view;
+  const void *overlay_of[3]; /* draft, region, measured draft that it was made for; compared, never followed */
+
+  gboolean pointer_in;
+  double pointer_x, pointer_y;
+  char *readout;
+  gboolean moved; /* the drag in hand went further than a click */
+  double last_x, last_y;
+  guint tick;
+};
+
+enum { TF_PLATE_MARGIN = 160 };
+
+/** tf_plate_draw_picture, tf_plate_draw_overlay: see to it that the surfaces are what the session shows. */
+void tf_plate_draw_picture (TfPlate *plate, int width, int height);
+void tf_plate_draw_overlay (TfPlate *plate, int width, int height);
+void tf_plate_draw_line (TfPlate *plate, cairo_t *cr, int width, int height);
+/** tf_plate_overlay_shift: where the overlay's top left stands now. */
+void tf_plate_overlay_shift (TfPlate *plate, double *dx, double *dy);
+/** tf_plate_item_at: (nullable) borrowed: the hint or mark under a point */
+TfRegionItem *tf_plate_item_at (TfPlate *plate, double x, double y);
+char *tf_plate_dup_description (TfPlate *plate);
+void tf_plate_add_tools (TfPlate *plate);
+void tf_plate_update_readout (TfPlate *plate);
+
+G_END_DECLS

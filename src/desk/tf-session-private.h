@@ -1,0 +1,119 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* The members of TfSession, for the tf-session-*.c files alone. */
+
+#include "tf-feed.h"
+#include "tf-lane.h"
+#include "tf-loader.h"
+#include "tf-session.h"
+#include "tf-wings.h"
+#include "tf-writer.h"
+
+G_BEGIN_DECLS
+
+typedef enum
+{
+  TF_SIGNAL_LEDGER,
+  TF_SIGNAL_FRAMES,
+  TF_SIGNAL_FRAME,
+  TF_SIGNAL_VIEW,
+  TF_SIGNAL_REGIONS,
+  TF_SIGNAL_CHOICE,
+  TF_SIGNAL_POINTS,
+  TF_SIGNAL_STATUS,
+  TF_SIGNAL_PERSON_NEEDED,
+} TfSessionSignal;
+
+struct _TfSession
+{
+  GObject parent;
+  TfJudge *judge;
+  TfPool *pool;
+  TfWorkers *workers;
+  TfMeasureParams params;
+  char *method; /* canonical text of params */
+
+  char *path;
+  gboolean open;
+  char *trouble;   /* why it could not be opened */
+  char *read_only; /* why nothing can be written */
+  TfLane *reader;
+  GCancellable *reading; /* raised when the ledger is let go */
+  TfWriter *writer;
+  gboolean refreshing, refresh_again, refresh_all;
+  gint64 version; /* of the file, as last read */
+  guint watch;
+  char *person;
+  gboolean wrote; /* the writer knows best what can be undone: only its connection writes under this replica */
+  gboolean can_undo, can_redo;
+  char *saved;
+
+  GListStore *frames;
+  GtkCustomFilter *filter;
+  GtkFilterListModel *shown;
+  TfFrameItem *frame_item;
+  TfFrame *frame;
+  char *frame_problem;
+  gboolean loading;
+  TfLoader *loader;
+  TfFeed *feed;
+  char *progress; /* words of the feed */
+  double progress_share;
+
+  TfView view;
+  gboolean fitted, north_up;
+  double range;
+  TfPalette palette;
+
+  GListStore *regions;
+  TfRegionItem *region;
+  gint64 want_mark; /* to be chosen when it comes; 0 */
+  gboolean want_hint;
+  gboolean want_next_hint;
+
+  TfTool tool;
+  GArray *line; /* TfVertex, Carrington */
+  TfOutline *draft;
+  TfRegionItem *replaced;
+  gboolean replaces;
+  guint64 draft_serial;
+  gboolean at_rest;
+  gboolean keeping; /* the draft is on its way into the ledger */
+  gboolean draft_looked; /* the ledger was asked for a draft on this frame */
+  char *draft_text; /* came before the pixels */
+  gboolean slow;    /* the line in hand is too large to be measured while it is drawn */
+  TfMeasure measure; /* of the line or the draft, when measured */
+  gboolean measured;
+  char *measure_problem;
+  TfSampleRow sample;
+  TfVerdict verdict;
+
+  GArray *points; /* TfPoint */
+  GArray *dots;   /* TfWingsDot of those shown */
+  GArray *all_dots;
+  guint n_marks, n_hints;
+  gboolean show_hints;
+  double pick_from, pick_to;
+};
+
+void tf_session_emit (TfSession *session, TfSessionSignal signal);
+void tf_session_say (TfSession *session, const char *text);
+/** tf_session_replace_frames: (transfer full) (element-type TfFrameRow): the whole roll */
+void tf_session_replace_frames (TfSession *session, GPtrArray *rows);
+void tf_session_clear_frames (TfSession *session);
+TfFrameItem *tf_session_find_frame (TfSession *session, gint64 id);
+/** tf_session_replace_regions: (element-type TfRow): takes the rows out of the array */
+void tf_session_replace_regions (TfSession *session, GPtrArray *rows);
+/** tf_session_replace_points: (transfer full) */
+void tf_session_replace_points (TfSession *session, GArray *points, GArray *dots);
+void tf_session_judge_choice (TfSession *session);
+void tf_session_drop_draft (TfSession *session);
+void tf_session_update_pick (TfSession *session);
+/** tf_session_restore_draft: from the ledger's text */
+void tf_session_restore_draft (TfSession *session, const char *text);
+void tf_session_connect_writer (TfSession *session);
+
+G_END_DECLS

@@ -1,0 +1,316 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-session.h"
+
+#include <math.h>
+
+#include "tf-session-private.h"
+
+G_DEFINE_FINAL_TYPE (TfSession, tf_session, G_TYPE_OBJECT)
+
+static const char *const signal_names[] = {
+  [TF_SIGNAL_LEDGER] = "ledger-changed", [TF_SIGNAL_FRAMES] = "frames-changed",
+  [TF_SIGNAL_FRAME] = "frame-changed",   [TF_SIGNAL_VIEW] = "view-changed",
+  [TF_SIGNAL_REGIONS] = "regions-changed", [TF_SIGNAL_CHOICE] = "choice-changed",
+  [TF_SIGNAL_POINTS] = "points-changed", [TF_SIGNAL_STATUS] = "status-changed",
+  [TF_SIGNAL_PERSON_NEEDED] = "person-needed",
+};
+
+enum { DEFAULT_RANGE_GAUSS = 200 };
+
+void
+tf_session_emit (TfSession *self, TfSessionSignal signal)
+{
+  g_signal_emit_by_name (self, signal_names[signal]);
+}
+
+void
+tf_session_say (TfSession *self, const char *text)
+{
+  g_signal_emit_by_name (self, "message", text);
+}
+
+static void
+dispose (GObject *object)
+{
+  TfSession *self = TF_SESSION (object);
+  tf_session_close (self);
+  g_clear_pointer (&self->loader, tf_loader_free);
+  g_clear_pointer (&self->frame, tf_frame_unref);
+  g_clear_object (&self->frame_item);
+  g_clear_object (&self->region);
+  g_clear_object (&self->replaced);
+  g_clear_object (&self->shown);
+  g_clear_object (&self->frames);
+  g_clear_object (&self->regions);
+  g_clear_object (&self->filter);
+  G_OBJECT_CLASS (tf_session_parent_class)->dispose (object);
+}
+
+static void
+finalize (GObject *object)
+{
+  TfSession *self = TF_SESSION (object);
+  g_clear_pointer (&self->draft, tf_outline_unref);
+  tf_measure_clear (&self->measure);
+  g_array_unref (self->line);
+  g_array_unref (self->points);
+  g_array_unref (self->dots);
+  g_array_unref (self->all_dots);
+  g_free (self->measure_problem);
+  g_free (self->frame_problem);
+  g_free (self->saved);
+  g_free (self->person);
+  g_free (self->method);
+  g_free (self->progress);
+  g_free (self->draft_text);
+  tf_judge_unref (self->judge);
+  tf_workers_unref (self->workers);
+  tf_pool_unref (self->pool);
+  G_OBJECT_CLASS (tf_session_parent_class)->finalize (object);
+}
+
+static void
+tf_session_class_init (TfSessionClass *klass)
+{
+  GObjectClass *object = G_OBJECT_CLASS (klass);
+  object->dispose = dispose;
+  object->finalize = finalize;
+  for (guint k = 0; k < G_N_ELEMENTS (signal_names); k++)
+    g_signal_new (signal_names[k], TF_TYPE_SESSION, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL, G_TYPE_NONE, 0);
+  g_signal_new ("message", TF_TYPE_SESSION, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL, G_TYPE_NONE, 1,
+                G_TYPE_STRING);
+}
+
+static void
+init_lists (TfSession *self)
+{
+  self->frames = g_list_store_new (TF_TYPE_FRAME_ITEM);
+  self->regions = g_list_store_new (TF_TYPE_REGION_ITEM);
+  self->line = g_array_new (FALSE, FALSE, sizeof (TfVertex));
+  self->points = g_array_new (FALSE, FALSE, sizeof (TfPoint));
+  self->dots = g_array_new (FALSE, FALSE, 1); /* replaced by tf_session_replace_points() */
+  self->all_dots = g_array_new (FALSE, FALSE, 1);
+}
+
+static void
+tf_session_init (TfSession *self)
+{
+  self->judge = tf_judge_new ();
+  self->pool = tf_pool_new ();
+  self->workers = tf_workers_new (0);
+  tf_measure_params_init (&self->params);
+  self->method = tf_options_dup_canonical (tf_measure_options, &self->params, TF_MEASURE_METHOD);
+  init_lists (self);
+  tf_session_replace_points (self, NULL, NULL);
+  self->loader = tf_loader_new (self->pool);
+  self->north_up = TRUE;
+  self->range = DEFAULT_RANGE_GAUSS;
+  self->pick_from = self->pick_to = NAN;
+  self->view.width = self->view.height = 1;
+  self->view.zoom = 1;
+  tf_session_update_pick (self);
+}
+
+TfSession *
+tf_session_new (void)
+{
+  return g_object_new (TF_TYPE_SESSION, NULL);
+}
+
+TfPool *
+tf_session_get_pool (TfSession *self)
+{
+  return self->pool;
+}
+
+TfWorkers *
+tf_session_get_workers (TfSession *self)
+{
+  return self->workers;
+}
+
+const char *
+tf_session_get_method (TfSession *self)
+{
+  return self->method;
+}
+
+const TfDivides *
+tf_session_get_divides (TfSession *self)
+{
+  return tf_judge_get_divides (self->judge);
+}
+
+/* -- regions and the choice ------------------------------------------------------------------ */
+
+GListModel *
+tf_session_get_regions (TfSession *self)
+{
+  return G_LIST_MODEL (self->regions);
+}
+
+TfRegionItem *
+tf_session_get_region (TfSession *self)
+{
+  return self->region;
+}
+
+void
+tf_session_choose_region (TfSession *self, TfRegionItem *item)
+{
+  g_return_if_fail (TF_IS_SESSION (self));
+  self->want_mark = 0;
+  if (!g_set_object (&self->region, item))
+    return;
+  g_clear_pointer (&self->saved, g_free);
+  tf_session_judge_choice (self);
+  tf_session_emit (self, TF_SIGNAL_CHOICE);
+}
+
+static int
+by_flux (gconstpointer a, gconstpointer b)
+{
+  const TfRow *ra = *(TfRow *const *)a, *rb = *(TfRow *const *)b;
+  double difference = rb->measure.flux_unsigned_mx - ra->measure.flux_unsigned_mx;
+  return (difference > 0) - (difference < 0);
+}
+
+/* Which item is chosen when the list came new: the one wanted, else the one chosen before. */
+static TfRegionItem *
+find_choice (TfSession *self, gint64 mark, gboolean is_hint)
+{
+  guint n = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) item = g_list_model_get_item (G_LIST_MODEL (self->regions), k);
+      if (tf_region_item_is (item, mark, is_hint))
+        return item; /* the list holds it */
+    }
+  return NULL;
+}
+
+static void
+choose_again (TfSession *self)
+{
+  TfRegionItem *next = NULL;
+  if (self->want_mark != 0)
+    next = find_choice (self, self->want_mark, self->want_hint);
+  if (next != NULL)
+    self->want_mark = 0;
+  else if (self->region != NULL)
+    {
+      const TfRow *row = tf_region_item_get_row (self->region);
+      next = find_choice (self, row->mark, row->is_hint);
+    }
+  g_set_object (&self->region, next);
+}
+
+void
+tf_session_replace_regions (TfSession *self, GPtrArray *rows)
+{
+  guint n = rows != NULL ? rows->len : 0;
+  g_autoptr (GPtrArray) items = g_ptr_array_new_with_free_func (g_object_unref);
+  if (rows != NULL)
+    {
+      g_ptr_array_sort (rows, by_flux);
+      g_ptr_array_set_free_func (rows, NULL);
+    }
+  for (guint k = 0; k < n; k++)
+    {
+      TfRow *row = g_ptr_array_index (rows, k);
+      TfVerdict verdict = tf_judge_measure (self->judge, &row->measure, NULL);
+      g_ptr_array_add (items, tf_region_item_new (row, verdict));
+    }
+  guint old = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
+  g_list_store_splice (self->regions, 0, old, items->pdata, items->len);
+  choose_again (self);
+  tf_session_judge_choice (self);
+  tf_session_emit (self, TF_SIGNAL_REGIONS);
+  tf_session_emit (self, TF_SIGNAL_CHOICE);
+  if (self->want_next_hint)
+    {
+      self->want_next_hint = FALSE;
+      tf_session_step_hint (self, 1);
+    }
+}
+
+gboolean
+tf_session_step_hint (TfSession *self, int step)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
+  GListModel *list = G_LIST_MODEL (self->regions);
+  int n = (int)g_list_model_get_n_items (list);
+  int at = step > 0 ? -1 : n;
+  for (int k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) item = g_list_model_get_item (list, (guint)k);
+      if (item == self->region)
+        at = k;
+    }
+  for (int tried = 0; tried < n; tried++)
+    {
+      at = (at + step + n) % n;
+      g_autoptr (TfRegionItem) item = g_list_model_get_item (list, (guint)at);
+      if (tf_region_item_get_row (item)->is_hint)
+        {
+          tf_session_choose_region (self, item);
+          return TRUE;
+        }
+    }
+  return FALSE;
+}
+
+/* -- the measure shown ----------------------------------------------------------------------- */
+
+static gboolean
+shows_drawing (TfSession *self)
+{
+  return self->draft != NULL || self->line->len > 0;
+}
+
+void
+tf_session_judge_choice (TfSession *self)
+{
+  const TfMeasure *measure = tf_session_get_measure (self);
+  if (measure != NULL)
+    self->verdict = tf_judge_measure (self->judge, measure, &self->sample);
+  else
+    {
+      self->verdict = (TfVerdict){ 0 };
+      tf_sample_row_init (&self->sample);
+    }
+}
+
+const TfMeasure *
+tf_session_get_measure (TfSession *self)
+{
+  if (shows_drawing (self))
+    return self->measured ? &self->measure : NULL;
+  return self->region != NULL ? &tf_region_item_get_row (self->region)->measure : NULL;
+}
+
+const TfSampleRow *
+tf_session_get_sample (TfSession *self)
+{
+  return &self->sample;
+}
+
+TfVerdict
+tf_session_get_verdict (TfSession *self)
+{
+  return self->verdict;
+}
+
+const char *
+tf_session_get_measure_problem (TfSession *self)
+{
+  return shows_drawing (self) ? self->measure_problem : NULL;
+}
+
+gboolean
+tf_session_is_at_rest (TfSession *self)
+{
+  return shows_drawing (self) ? self->at_rest : TRUE;
+}

@@ -1,0 +1,171 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfSession: what is open and chosen in one window. Main thread only. Widgets show it and change it through these functions; they
+ * never speak to each other. Nothing here names a widget.
+ *
+ * Signals (none has arguments unless given):
+ *   "ledger-changed"   path, whether it is open, read-only, person, what opening found
+ *   "frames-changed"   the list of frames
+ *   "frame-changed"    the chosen frame, or its pixels came, or could not be had
+ *   "view-changed"     what part is seen, range, palette
+ *   "regions-changed"  hints and marks on the plate
+ *   "choice-changed"   the chosen region, the draft, the tool, the measure of either
+ *   "points-changed"   the dots of the wings and the stretch picked on them
+ *   "status-changed"   busy, problem, pending deeds, undo and redo
+ *   "message" (text)   something to be said once
+ *   "person-needed"    a deed waits for the name of who does it
+ */
+
+#include <gtk/gtk.h>
+
+#include "tf-deed.h"
+#include "tf-frame-item.h"
+#include "tf-judge.h"
+#include "tf-picture.h"
+#include "tf-region-item.h"
+
+G_BEGIN_DECLS
+
+typedef enum
+{
+  TF_TOOL_NONE,
+  TF_TOOL_OUTLINE, /* freehand */
+  TF_TOOL_POLYGON, /* corner by corner */
+} TfTool;
+
+#define TF_TYPE_SESSION (tf_session_get_type ())
+G_DECLARE_FINAL_TYPE (TfSession, tf_session, TF, SESSION, GObject)
+
+TfSession *tf_session_new (void);
+/** tf_session_close: lets the ledger go; deeds already handed on are written first. */
+void tf_session_close (TfSession *session);
+
+/* -- the ledger (tf-session-ledger.c) */
+/** tf_session_open_ledger: @letter: 0 opens; A-Z makes a new one. */
+void tf_session_open_ledger (TfSession *session, const char *path, char letter);
+const char *tf_session_get_ledger_path (TfSession *session);
+/** tf_session_get_ledger_name: without folder and ending; NULL without a ledger. */
+char *tf_session_dup_ledger_name (TfSession *session);
+gboolean tf_session_has_ledger (TfSession *session);
+/** tf_session_get_ledger_problem: why it could not be opened, or why nothing can be written; NULL. */
+const char *tf_session_get_ledger_problem (TfSession *session);
+gboolean tf_session_is_writable (TfSession *session);
+const char *tf_session_get_person (TfSession *session);
+void tf_session_set_person (TfSession *session, const char *name);
+/** tf_session_refresh: reads again; @all: the whole roll, not only the chosen frame. */
+void tf_session_refresh (TfSession *session, gboolean all);
+
+/* -- frames (tf-session-frames.c) */
+/** tf_session_get_frames: of TfFrameItem, in time order, those of the stretch picked on the wings. */
+GListModel *tf_session_get_frames (TfSession *session);
+guint tf_session_get_n_frames (TfSession *session);
+/** tf_session_add_frames: files and folders; into the ledger when one is open, else only to look at. */
+void tf_session_add_frames (TfSession *session, char *const *paths);
+TfFrameItem *tf_session_get_frame_item (TfSession *session);
+void tf_session_choose_frame (TfSession *session, TfFrameItem *item);
+void tf_session_step_frame (TfSession *session, int step);
+/** tf_session_get_frame: (nullable): the open frame, borrowed */
+TfFrame *tf_session_get_frame (TfSession *session);
+/** tf_session_get_frame_problem: why the chosen frame cannot be shown */
+const char *tf_session_get_frame_problem (TfSession *session);
+gboolean tf_session_is_loading (TfSession *session);
+/** tf_session_get_progress: (nullable): words of the long work under way; @share 0-1 or negative when unknown */
+const char *tf_session_get_progress (TfSession *session, double *share);
+void tf_session_cancel (TfSession *session);
+/** tf_session_get_newest: time of the newest frame and the usual step between frames, s; unknown and NaN */
+TfTime tf_session_get_newest (TfSession *session, double *cadence_s);
+
+/* -- the view (tf-session-view.c) */
+const TfView *tf_session_get_view (TfSession *session);
+void tf_session_set_view_size (TfSession *session, double width, double height);
+void tf_session_pan (TfSession *session, double dx, double dy);
+void tf_session_zoom (TfSession *session, double factor, double vx, double vy);
+void tf_session_fit (TfSession *session);
+void tf_session_set_look (TfSession *session, TfLook look);
+gboolean tf_session_get_north_up (TfSession *session);
+void tf_session_set_north_up (TfSession *session, gboolean north_up);
+double tf_session_get_range (TfSession *session);
+void tf_session_set_range (TfSession *session, double gauss);
+TfPalette tf_session_get_palette (TfSession *session);
+void tf_session_set_palette (TfSession *session, TfPalette palette);
+TfPool *tf_session_get_pool (TfSession *session);
+TfWorkers *tf_session_get_workers (TfSession *session);
+
+/* -- hints, marks, the choice */
+/** tf_session_get_regions: of TfRegionItem, strongest first */
+GListModel *tf_session_get_regions (TfSession *session);
+TfRegionItem *tf_session_get_region (TfSession *session);
+void tf_session_choose_region (TfSession *session, TfRegionItem *item);
+/** tf_session_step_hint: FALSE when there is none */
+gboolean tf_session_step_hint (TfSession *session, int step);
+
+/* -- drawing (tf-session-draft.c) */
+TfTool tf_session_get_tool (TfSession *session);
+void tf_session_set_tool (TfSession *session, TfTool tool);
+/** tf_session_draw_to: one more vertex (Carrington, deg) of the line in hand */
+void tf_session_draw_to (TfSession *session, double lon_deg, double lat_deg);
+/** tf_session_get_line: borrowed vertices of the line in hand */
+void tf_session_get_line (TfSession *session, const TfVertex **line, guint *n);
+/** tf_session_measure_line: measures the line in hand as if it were closed; called once a frame of animation */
+void tf_session_measure_line (TfSession *session);
+/** tf_session_finish_line: closes it: the draft. FALSE when it is no outline. */
+gboolean tf_session_finish_line (TfSession *session);
+/** tf_session_take_back_corner: FALSE when there is none */
+gboolean tf_session_take_back_corner (TfSession *session);
+void tf_session_discard_draft (TfSession *session);
+void tf_session_set_draft (TfSession *session, TfOutline *outline);
+TfOutline *tf_session_get_draft (TfSession *session);
+/** tf_session_get_replaced: (nullable): the hint or mark whose place the draft would take */
+TfRegionItem *tf_session_get_replaced (TfSession *session);
+gboolean tf_session_get_replaces (TfSession *session);
+void tf_session_set_replaces (TfSession *session, gboolean replaces);
+
+/* -- what the slip shows: of the line in hand, else the draft, else the chosen region */
+const TfMeasure *tf_session_get_measure (TfSession *session);
+const TfSampleRow *tf_session_get_sample (TfSession *session);
+TfVerdict tf_session_get_verdict (TfSession *session);
+/** tf_session_get_measure_problem: why there are no numbers for the line in hand */
+const char *tf_session_get_measure_problem (TfSession *session);
+/** tf_session_is_at_rest: the outline term is in */
+gboolean tf_session_is_at_rest (TfSession *session);
+const char *tf_session_get_method (TfSession *session);
+const TfDivides *tf_session_get_divides (TfSession *session);
+
+/* -- deeds (tf-session-deeds.c); FALSE: not possible now (the actions ask the tf_session_can_ twins) */
+gboolean tf_session_can_keep (TfSession *session);
+gboolean tf_session_keep (TfSession *session);
+gboolean tf_session_can_drop (TfSession *session);
+gboolean tf_session_drop (TfSession *session);
+gboolean tf_session_can_withdraw (TfSession *session);
+gboolean tf_session_withdraw (TfSession *session);
+gboolean tf_session_can_describe (TfSession *session); /* note and class: a mark is chosen */
+gboolean tf_session_set_note (TfSession *session, const char *text);
+gboolean tf_session_set_class (TfSession *session, const char *text);
+gboolean tf_session_can_undo (TfSession *session);
+gboolean tf_session_undo (TfSession *session);
+gboolean tf_session_can_redo (TfSession *session);
+gboolean tf_session_redo (TfSession *session);
+guint tf_session_get_pending (TfSession *session);
+/** tf_session_get_saved: words about the last deed ("saved"), or NULL */
+const char *tf_session_get_saved (TfSession *session);
+const char *tf_session_get_problem (TfSession *session);
+void tf_session_retry (TfSession *session);
+void tf_session_give_up (TfSession *session);
+
+/* -- the wings (tf-session-wings.c) */
+/** tf_session_get_dots: (element-type TfWingsDot): those shown; @n_hidden: (out): hints not shown */
+GArray *tf_session_get_dots (TfSession *session, guint *n_hidden);
+guint tf_session_get_n_marks (TfSession *session);
+gboolean tf_session_get_show_hints (TfSession *session);
+void tf_session_set_show_hints (TfSession *session, gboolean show);
+void tf_session_choose_dot (TfSession *session, gint64 id);
+/** tf_session_get_chosen_dot: 0: none */
+gint64 tf_session_get_chosen_dot (TfSession *session);
+/** tf_session_pick: a stretch of years; NaN: all */
+void tf_session_pick (TfSession *session, double from, double to);
+void tf_session_get_pick (TfSession *session, double *from, double *to);
+
+G_END_DECLS

@@ -1,0 +1,155 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-slip-frame.h"
+
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-slip-words.h"
+
+struct _TfSlipFrame
+{
+  GtkWidget parent;
+  GtkLabel *title, *facts, *next, *cautions, *repairs;
+  GtkWidget *repairs_box, *cautions_box;
+  TfSession *session;
+};
+
+G_DEFINE_FINAL_TYPE (TfSlipFrame, tf_slip_frame, GTK_TYPE_WIDGET)
+
+static char *
+dup_sentences (const TfNotes *notes)
+{
+  GString *text = g_string_new (NULL);
+  for (guint k = 0; k < tf_notes_get_n (notes); k++)
+    {
+      g_autofree char *sentence = tf_note_dup_text (tf_notes_get (notes, k), FALSE);
+      g_string_append_printf (text, "%s%s", k > 0 ? "\n\n" : "", sentence);
+    }
+  return g_string_free (text, FALSE);
+}
+
+static void
+append_noise (GString *text, TfFrame *frame)
+{
+  guint n;
+  if (frame == NULL || tf_frame_get_noise (frame, &n) == NULL || n == 0)
+    return;
+  gboolean map = tf_geometry_is_map (tf_frame_get_geometry (frame));
+  g_autofree char *noise = tf_words_dup_number (tf_frame_noise_at (frame, map ? 0 : 1), 1);
+  g_string_append_printf (text, map ? _ ("\nnoise %s G at the equator") : _ ("\nnoise %s G at the disk’s centre"), noise);
+}
+
+static char *
+dup_facts (const TfFrameRow *row, TfFrame *frame)
+{
+  const TfFrameInfo *info = row->info;
+  GString *text = g_string_new (NULL);
+  g_string_append_printf (text, "%s · %s", tf_kind_name (info->kind), info->instrument != NULL ? info->instrument : "");
+  if (info->geometry.width > 0)
+    g_string_append_printf (text, _ ("\n%u × %u pixels"), info->geometry.width, info->geometry.height);
+  if (isfinite (info->geometry.observer.b0_deg) && !tf_geometry_is_map (&info->geometry))
+    {
+      g_autofree char *vantage = tf_observer_dup_vantage (&info->geometry.observer);
+      g_autofree char *b0 = tf_words_dup_signed (info->geometry.observer.b0_deg, 2);
+      g_autofree char *l0 = tf_words_dup_number (info->geometry.observer.carrington_lon_deg, 1);
+      g_string_append_printf (text, _ ("\nseen from %s · B0 %s° · L0 %s°"), vantage, b0, l0);
+    }
+  static const char *const fields[] = { N_ ("field of unknown direction"), N_ ("line-of-sight field"), N_ ("radial field") };
+  g_string_append_printf (text, "\n%s", _ (fields[info->field]));
+  append_noise (text, frame);
+  if (info->simulated)
+    g_string_append (text, _ ("\nsimulated: an invented Sun"));
+  return g_string_free (text, FALSE);
+}
+
+static const char *
+next_step (TfSlipFrame *self)
+{
+  GListModel *regions = tf_session_get_regions (self->session);
+  guint n = g_list_model_get_n_items (regions);
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) item = g_list_model_get_item (regions, k);
+      if (tf_region_item_get_row (item)->is_hint)
+        return _ ("Press . for the next hint, then K to keep it or X to drop it. Press O and draw round a region to mark it yourself.");
+    }
+  return n > 0 ? _ ("Click a region to see what is known of it. Press O and draw round another to mark it.")
+               : _ ("Press O and draw round a region, or P and click its corners. Its numbers stand here while you draw.");
+}
+
+static void
+set_section (GtkWidget *box, GtkLabel *label, char *text)
+{
+  gtk_label_set_label (label, text);
+  gtk_widget_set_visible (box, text[0] != '\0');
+  g_free (text);
+}
+
+static void
+show (TfSlipFrame *self)
+{
+  TfFrameItem *item = tf_session_get_frame_item (self->session);
+  TfFrame *frame = tf_session_get_frame (self->session);
+  if (item == NULL)
+    {
+      gtk_label_set_label (self->title, _ ("No frame"));
+      gtk_label_set_label (self->facts, _ ("Choose a frame in the roll, or add frames."));
+      gtk_label_set_label (self->next, "");
+      gtk_widget_set_visible (self->cautions_box, FALSE);
+      gtk_widget_set_visible (self->repairs_box, FALSE);
+      return;
+    }
+  const TfFrameRow *row = tf_frame_item_get_row (item);
+  g_autofree char *time = tf_time_dup_iso (row->info->time, 0);
+  g_autofree char *facts = dup_facts (row, frame);
+  gtk_label_set_label (self->title, time != NULL ? time : _ ("time unknown"));
+  gtk_label_set_label (self->facts, facts);
+  gtk_label_set_label (self->next, frame != NULL ? next_step (self) : "");
+  set_section (self->cautions_box, self->cautions,
+               dup_sentences (frame != NULL ? tf_frame_get_cautions (frame) : row->info->cautions));
+  set_section (self->repairs_box, self->repairs, dup_sentences (row->info->repairs));
+}
+
+void
+tf_slip_frame_set_session (TfSlipFrame *self, TfSession *session)
+{
+  g_return_if_fail (TF_IS_SLIP_FRAME (self) && TF_IS_SESSION (session) && self->session == NULL);
+  self->session = g_object_ref (session);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (show), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "regions-changed", G_CALLBACK (show), self, G_CONNECT_SWAPPED);
+  show (self);
+}
+
+static void
+dispose (GObject *object)
+{
+  TfSlipFrame *self = TF_SLIP_FRAME (object);
+  GtkWidget *child = gtk_widget_get_first_child (GTK_WIDGET (self));
+  g_clear_object (&self->session);
+  g_clear_pointer (&child, gtk_widget_unparent);
+  G_OBJECT_CLASS (tf_slip_frame_parent_class)->dispose (object);
+}
+
+static void
+tf_slip_frame_class_init (TfSlipFrameClass *klass)
+{
+  GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
+  G_OBJECT_CLASS (klass)->dispose = dispose;
+  gtk_widget_class_set_layout_manager_type (widget, GTK_TYPE_BIN_LAYOUT);
+  gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/slip-frame.ui");
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, title);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, facts);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, next);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, cautions);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, cautions_box);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, repairs);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, repairs_box);
+}
+
+static void
+tf_slip_frame_init (TfSlipFrame *self)
+{
+  gtk_widget_init_template (GTK_WIDGET (self));
+}

@@ -1,0 +1,334 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-slip-words.h"
+
+#include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-chart.h"
+#include "tf-joy.h"
+#include "tf-number.h"
+
+/* -- small words --------------------------------------------------------------------------------- */
+
+char *
+tf_words_dup_number (double value, guint decimals)
+{
+  if (!isfinite (value))
+    return g_strdup ("—");
+  char form[8];
+  g_snprintf (form, sizeof form, ".%uf", decimals);
+  g_autofree char *number = tf_number_dup_form (value, form, TRUE);
+  return number[0] == '-' ? g_strconcat ("−", number + 1, NULL) : g_steal_pointer (&number);
+}
+
+char *
+tf_words_dup_signed (double value, guint decimals)
+{
+  g_autofree char *number = tf_words_dup_number (value, decimals);
+  return value > 0 ? g_strconcat ("+", number, NULL) : g_steal_pointer (&number);
+}
+
+char *
+tf_words_dup_place (const TfMeasure *m)
+{
+  if (!isfinite (m->lat_deg))
+    return g_strdup ("—");
+  if (isfinite (m->cmd_deg))
+    return tf_chart_dup_place (m->lat_deg, m->cmd_deg);
+  g_autofree char *lon = tf_words_dup_number (m->carrington_lon_deg, 0);
+  return g_strdup_printf (_ ("%s%.0f, Carrington %s°"), m->lat_deg < 0 ? _ ("S") : _ ("N"), fabs (m->lat_deg), lon);
+}
+
+char *
+tf_words_dup_longitude (const TfMeasure *m)
+{
+  if (!isfinite (m->cmd_deg) || !isfinite (m->stonyhurst_lon_deg)
+      || fabs (tf_wrap_180 (m->cmd_deg - m->stonyhurst_lon_deg)) < 0.5)
+    return NULL;
+  g_autofree char *lon = tf_words_dup_signed (m->stonyhurst_lon_deg, 1);
+  return g_strdup_printf (_ ("Stonyhurst %s°"), lon);
+}
+
+const char *
+tf_words_verdict_name (TfVerdictKind kind)
+{
+  switch (kind)
+    {
+    case TF_VERDICT_KEEPS:
+      return _ ("keeps Hale’s law");
+    case TF_VERDICT_BREAKS:
+      return _ ("breaks Hale’s law");
+    case TF_VERDICT_CANNOT_SAY:
+    default:
+      return _ ("cannot say");
+    }
+}
+
+char *
+tf_words_dup_age (double seconds)
+{
+  if (!isfinite (seconds))
+    return g_strdup (_ ("unknown"));
+  double hours = fabs (seconds) / 3600;
+  if (hours < 1)
+    return g_strdup_printf (_ ("%.0f min"), hours * 60);
+  if (hours < 48)
+    return g_strdup_printf (_ ("%.0f h"), hours);
+  if (hours < 24 * 365.25)
+    return g_strdup_printf (_ ("%.0f d"), hours / 24);
+  return g_strdup_printf (_ ("%.0f y"), hours / 24 / 365.25);
+}
+
+const char *
+tf_line_name (TfLine line)
+{
+  static const char *const names[TF_N_LINES]
+      = { N_ ("leader"), N_ ("axis tilt"), N_ ("leading"), N_ ("following"), N_ ("separation"), N_ ("shape"), N_ ("floor") };
+  return _ (names[line]);
+}
+
+static const char *
+sign_of (int polarity)
+{
+  return polarity > 0 ? "+" : polarity < 0 ? "−" : "?";
+}
+
+static const TfPole *
+pole_of (const TfMeasure *m, gboolean leading)
+{
+  gboolean positive = (m->leading_polarity > 0) == leading;
+  return positive ? &m->positive : &m->negative;
+}
+
+/* "6.1·10²¹" without its unit */
+static char *
+dup_flux_bare (double mx)
+{
+  char *text = tf_chart_dup_flux (mx);
+  char *unit = g_strrstr (text, " Mx");
+  if (unit != NULL)
+    *unit = '\0';
+  return text;
+}
+
+/* -- values ------------------------------------------------------------------------------------------ */
+
+static char *
+value_leader (const TfMeasure *m)
+{
+  if (m->leading_polarity == 0)
+    return g_strdup (_ ("no two poles"));
+  return g_strdup_printf (m->leading_sure ? _ ("%s leads, sure") : _ ("%s leads, unsure"), sign_of (m->leading_polarity));
+}
+
+static char *
+value_tilt (const TfMeasure *m)
+{
+  if (!isfinite (m->axis_tilt_deg))
+    return isfinite (m->axis_bearing_deg) ? g_strdup (_ ("none: straddles the equator")) : g_strdup ("—");
+  g_autofree char *tilt = tf_words_dup_signed (m->axis_tilt_deg, 1);
+  g_autofree char *sigma = tf_words_dup_number (m->tilt_terms.total, 1);
+  return g_strdup_printf ("%s° ± %s°", tilt, sigma);
+}
+
+static char *
+value_flux (const TfMeasure *m, gboolean leading)
+{
+  const TfPole *pole = pole_of (m, leading);
+  if (m->leading_polarity == 0 && pole->pixels == 0)
+    return g_strdup ("—");
+  g_autofree char *flux = tf_chart_dup_flux (pole->flux_mx);
+  return g_strdup_printf ("%s %s", pole == &m->positive ? "+" : "−", flux);
+}
+
+static char *
+value_separation (const TfMeasure *m)
+{
+  if (!isfinite (m->separation_deg))
+    return g_strdup ("—");
+  g_autofree char *deg = tf_words_dup_number (m->separation_deg, 1), *mm = tf_words_dup_number (m->separation_mm, 0);
+  return g_strdup_printf (_ ("%s° · %s Mm"), deg, mm);
+}
+
+static char *
+value_shape (const TfMeasure *m)
+{
+  g_autofree char *imbalance = tf_words_dup_signed (m->imbalance, 2);
+  return g_strdup_printf (_ ("imbalance %s"), imbalance);
+}
+
+static char *
+value_floor (const TfMeasure *m)
+{
+  g_autofree char *floor = tf_words_dup_number (m->floor_gauss, 0);
+  return g_strdup_printf (m->floor_kind == TF_FLOOR_EVEN ? _ ("even, %s G") : _ ("local, %s G"), floor);
+}
+
+char *
+tf_line_dup_value (TfLine line, const TfReading *r)
+{
+  switch (line)
+    {
+    case TF_LINE_LEADER:
+      return value_leader (r->measure);
+    case TF_LINE_TILT:
+      return value_tilt (r->measure);
+    case TF_LINE_LEADING:
+      return value_flux (r->measure, TRUE);
+    case TF_LINE_FOLLOWING:
+      return value_flux (r->measure, FALSE);
+    case TF_LINE_SEPARATION:
+      return value_separation (r->measure);
+    case TF_LINE_SHAPE:
+      return value_shape (r->measure);
+    case TF_LINE_FLOOR:
+      return value_floor (r->measure);
+    case TF_N_LINES:
+    default:
+      g_return_val_if_reached (NULL);
+    }
+}
+
+/* -- what stands under them ------------------------------------------------------------------------------ */
+
+static char *
+under_leader (const TfMeasure *m)
+{
+  GString *text = g_string_new (_ ("witnesses"));
+  for (guint k = 0; k < G_N_ELEMENTS (m->witnesses); k++)
+    g_string_append_printf (text, " %s", m->witnesses[k] == TF_WITNESS_ABSENT ? "–" : sign_of (m->witnesses[k]));
+  return g_string_free (text, FALSE);
+}
+
+static char *
+under_tilt (const TfReading *r)
+{
+  const TfMeasure *m = r->measure;
+  double expected, scatter;
+  g_autofree char *noise = tf_words_dup_number (m->tilt_terms.noise, 1);
+  g_autofree char *outline = r->at_rest ? tf_words_dup_number (m->tilt_terms.outline, 1) : g_strdup ("…");
+  g_autofree char *floor = tf_words_dup_number (m->tilt_terms.floor, 1);
+  GString *text = g_string_new (NULL);
+  tf_joy_expected (m->lat_deg, m->separation_deg, &expected, &scatter);
+  if (isfinite (expected))
+    {
+      g_autofree char *e = tf_words_dup_signed (expected, 0), *s = tf_words_dup_number (scatter, 0);
+      g_string_append_printf (text, _ ("expected %s° ± %s° (Joy)\n"), e, s);
+    }
+  g_string_append_printf (text, _ ("noise %s° · outline %s° · floor %s°"), noise, outline, floor);
+  return g_string_free (text, FALSE);
+}
+
+static char *
+under_flux (const TfMeasure *m, gboolean leading)
+{
+  const TfPole *pole = pole_of (m, leading);
+  if (!(m->flux_unsigned_mx > 0))
+    return NULL;
+  g_autofree char *sigma = dup_flux_bare (pole->flux_sigma_mx);
+  return g_strdup_printf (_ ("± %s · %.0f %% of the flux"), sigma, 100 * pole->flux_mx / m->flux_unsigned_mx);
+}
+
+static char *
+under_separation (const TfMeasure *m)
+{
+  if (!isfinite (m->separation_deg))
+    return NULL;
+  g_autofree char *deg = tf_words_dup_number (m->separation_sigma_deg, 2);
+  g_autofree char *mm = tf_words_dup_number (m->separation_sigma_deg * m->separation_mm / m->separation_deg, 1);
+  return g_strdup_printf (_ ("± %s° · ± %s Mm"), deg, mm);
+}
+
+static char *
+under_shape (const TfMeasure *m)
+{
+  g_autofree char *compactness = tf_words_dup_number (m->compactness, 2);
+  g_autofree char *pieces = g_strdup_printf (ngettext ("%u piece", "%u pieces", m->pieces), m->pieces);
+  return g_strdup_printf (_ ("compactness %s · %s"), compactness, pieces);
+}
+
+static char *
+under_floor (const TfMeasure *m)
+{
+  g_autofree char *noise = tf_words_dup_number (m->noise_gauss, 1), *mu = tf_words_dup_number (m->mu, 2);
+  const char *why = m->floor_kind == TF_FLOOR_LOCAL ? _ ("of this single look\n") : "";
+  return g_strdup_printf (_ ("%snoise %s G · μ %s"), why, noise, mu);
+}
+
+char *
+tf_line_dup_under (TfLine line, const TfReading *r)
+{
+  switch (line)
+    {
+    case TF_LINE_LEADER:
+      return under_leader (r->measure);
+    case TF_LINE_TILT:
+      return under_tilt (r);
+    case TF_LINE_LEADING:
+      return under_flux (r->measure, TRUE);
+    case TF_LINE_FOLLOWING:
+      return under_flux (r->measure, FALSE);
+    case TF_LINE_SEPARATION:
+      return under_separation (r->measure);
+    case TF_LINE_SHAPE:
+      return under_shape (r->measure);
+    case TF_LINE_FLOOR:
+      return under_floor (r->measure);
+    case TF_N_LINES:
+    default:
+      g_return_val_if_reached (NULL);
+    }
+}
+
+/* -- how they were got ---------------------------------------------------------------------------------------- */
+
+static const char *const how_texts[TF_N_LINES] = {
+  [TF_LINE_LEADER] = N_ ("The leading polarity is the one whose pole lies further west. Three witnesses tell it apart from each other: the "
+                         "flux centroids; the centroids of the field above three times the floor; the western of the two strongest "
+                         "single-polarity pieces. It is sure when all agree and the poles are further apart in longitude than twice "
+                         "the uncertainty."),
+  [TF_LINE_TILT] = N_ ("Angle of the axis from the following to the leading pole against the parallel, planar with the cosine of the mean "
+                       "latitude; positive means the leader is nearer to the equator, in both hemispheres. Its uncertainty: noise "
+                       "(every pixel that may cross the floor counted), outline (16 fixed deformations of it), floor (20 % up and down), in quadrature."),
+  [TF_LINE_LEADING] = N_ ("Sum of field times area over the pixels of that polarity above the floor, inside the outline. The uncertainty holds "
+                          "noise, outline and floor."),
+  [TF_LINE_FOLLOWING] = N_ ("Sum of field times area over the pixels of that polarity above the floor, inside the outline. The uncertainty "
+                            "holds noise, outline and floor."),
+  [TF_LINE_SEPARATION] = N_ ("Great-circle distance between the flux-weighted centroids of the two polarities, as unit vectors on the Sun; "
+                             "lengths on a sphere of 695.7 Mm (IAU 2015 Resolution B3)."),
+  [TF_LINE_SHAPE] = N_ ("Imbalance: (positive − negative) / (positive + negative flux). Compactness: separation / sum of the two rms radii; below "
+                        "0.8 the poles overlap, below 0.5 the tilt is unsure. Pieces: connected parts of one polarity with at least 15 % of the flux."),
+  [TF_LINE_FLOOR] = N_ ("Only pixels stronger than the floor count. A local floor is three times the noise at that place, the default for a "
+                        "single look; towards the limb it keeps less of the same region. Follow, Laws and export use one even floor for a whole study. "
+                        "The noise is 1.4826 × the median absolute deviation of weak pixels by rings of μ; the header’s figure is not trusted."),
+};
+
+static void
+append_source (GString *text, TfLine line)
+{
+  if (line == TF_LINE_TILT && tf_joy_relations[0].name != NULL)
+    g_string_append_printf (text, _ ("\n\nExpected tilt: Joy’s law after %s; the scatter is wider for close poles."),
+                            tf_joy_relations[0].name);
+}
+
+char *
+tf_line_dup_how (TfLine line, const TfReading *r)
+{
+  const TfMeasure *m = r->measure;
+  GString *text = g_string_new (_ (how_texts[line]));
+  append_source (text, line);
+  g_autofree char *floor = tf_words_dup_number (m->floor_gauss, 1);
+  g_string_append_printf (text, _ ("\n\nPixels above the floor: %u positive, %u negative."), m->positive.pixels,
+                          m->negative.pixels);
+  g_string_append_printf (text, m->floor_kind == TF_FLOOR_EVEN ? _ ("\nFloor: even, %s G.") : _ ("\nFloor: local, %s G here."), floor);
+  static const char *const used[] = { N_ ("radial (line of sight / μ)"), N_ ("as observed"), N_ ("potential-field estimate") };
+  g_string_append_printf (text, _ ("\nField used: %s."), _ (used[m->field_used]));
+  if (!isfinite (m->scale))
+    g_string_append (text, _ ("\nThe instrument’s field is not scaled."));
+  if (line == TF_LINE_TILT && !r->at_rest)
+    g_string_append (text, _ ("\nThe outline term follows when the drawing rests."));
+  g_string_append_printf (text, _ ("\n\nMethod: %s"), r->method);
+  return g_string_free (text, FALSE);
+}

@@ -1,0 +1,363 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-slip.h"
+
+#include <math.h>
+#include <string.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-dial-view.h"
+#include "tf-joy.h"
+#include "tf-slip-frame.h"
+#include "tf-slip-row.h"
+#include "tf-slip-words.h"
+
+struct _TfSlip
+{
+  GtkWidget parent;
+  GtkStack *stack;
+  GtkLabel *title, *place, *origin, *longitude, *saved, *problem, *verdict, *verdict_why, *cautions;
+  TfDialView *dial;
+  TfVerdictSign *sign;
+  GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box;
+  GtkCheckButton *replaces;
+  GtkBox *rows;
+  TfSlipRow *row[TF_N_LINES];
+  GtkToggleButton *class_alpha, *class_beta, *class_beta_gamma, *class_gamma, *class_delta;
+  GtkTextView *note;
+  TfSlipFrame *frame_page;
+  TfSession *session;
+  TfRegionItem *noted; /* whose note stands in the entry */
+  gboolean setting;
+};
+
+G_DEFINE_FINAL_TYPE (TfSlip, tf_slip, GTK_TYPE_WIDGET)
+
+static void
+set_label (GtkLabel *label, const char *text)
+{
+  gtk_widget_set_visible (GTK_WIDGET (label), text != NULL && text[0] != '\0');
+  if (g_strcmp0 (gtk_label_get_label (label), text) != 0)
+    gtk_label_set_label (label, text != NULL ? text : "");
+}
+
+/* -- the head ---------------------------------------------------------------------------------------- */
+
+static void
+show_replaces (TfSlip *self)
+{
+  TfRegionItem *replaced = tf_session_get_draft (self->session) != NULL ? tf_session_get_replaced (self->session) : NULL;
+  gtk_widget_set_visible (GTK_WIDGET (self->replaces), replaced != NULL);
+  if (replaced == NULL)
+    return;
+  gboolean hint = tf_region_item_get_row (replaced)->is_hint;
+  g_autofree char *text = g_strdup_printf (hint ? _ ("in place of the %s inside it") : _ ("in place of %s"),
+                                           tf_region_item_get_label (replaced));
+  gtk_check_button_set_label (self->replaces, text);
+  gtk_check_button_set_active (self->replaces, tf_session_get_replaces (self->session));
+}
+
+/* Of the ledger's own English names. */
+static const char *
+origin_words (const char *origin)
+{
+  static const char *const names[] = { N_ ("kept as hinted"), N_ ("changed"), N_ ("drawn new"), N_ ("outside") };
+  for (guint k = 0; k < G_N_ELEMENTS (names); k++)
+    if (strcmp (names[k], origin) == 0)
+      return _ (names[k]);
+  return origin;
+}
+
+static const char *
+draft_title (TfSlip *self)
+{
+  switch (tf_session_get_tool (self->session))
+    {
+    case TF_TOOL_OUTLINE:
+      return _ ("Drawing");
+    case TF_TOOL_POLYGON:
+      return _ ("Polygon");
+    case TF_TOOL_NONE:
+    default:
+      return _ ("Draft");
+    }
+}
+
+static void
+show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure *measure)
+{
+  const TfRow *row = !drawing && region != NULL ? tf_region_item_get_row (region) : NULL;
+  g_autofree char *place = measure != NULL ? tf_words_dup_place (measure) : NULL;
+  g_autofree char *longitude = measure != NULL ? tf_words_dup_longitude (measure) : NULL;
+  g_autofree char *origin = NULL;
+  if (row == NULL)
+    origin = g_strdup (tf_session_get_draft (self->session) != NULL ? _ ("not kept yet") : _ ("close the line to make a draft"));
+  else if (row->is_hint)
+    origin = g_strdup (row->unipolar ? _ ("a hint of one polarity · nobody has judged it") : _ ("a hint · nobody has judged it"));
+  else
+    origin = g_strdup_printf ("%s · %s", origin_words (row->origin), row->person);
+  set_label (self->title, row == NULL ? draft_title (self) : row->is_hint ? _ ("Hint") : row->region);
+  set_label (self->place, place);
+  set_label (self->longitude, longitude);
+  set_label (self->origin, origin);
+  gtk_widget_set_visible (self->keep_box, drawing || (row != NULL && row->is_hint));
+  gtk_widget_set_visible (self->drop, row != NULL && row->is_hint);
+  gtk_widget_set_visible (self->discard, drawing);
+  gtk_widget_set_visible (self->withdraw, row != NULL && !row->is_hint);
+  show_replaces (self);
+}
+
+/* -- dial, verdict, numbers ----------------------------------------------------------------------------- */
+
+static void
+show_dial (TfSlip *self, const TfMeasure *m, const TfVerdict *verdict)
+{
+  TfDial dial = { .bearing_deg = m->axis_bearing_deg, .sigma_deg = m->tilt_terms.total, .lat_deg = m->lat_deg,
+                  .leading_polarity = m->leading_polarity, .expected = verdict->expected };
+  tf_joy_expected (m->lat_deg, m->separation_deg, &dial.joy_deg, &dial.joy_scatter_deg);
+  dial.joy_name = tf_joy_relations[0].name;
+  memcpy (dial.witnesses, m->witnesses, sizeof dial.witnesses);
+  tf_dial_view_set (self->dial, &dial);
+}
+
+static void
+show_verdict (TfSlip *self, const TfVerdict *verdict)
+{
+  static const TfDiamond signs[] = { [TF_VERDICT_CANNOT_SAY] = TF_DIAMOND_HOLLOW, [TF_VERDICT_KEEPS] = TF_DIAMOND_PLAIN,
+                                     [TF_VERDICT_BREAKS] = TF_DIAMOND_STRUCK };
+  g_autofree char *sentence = tf_verdict_dup_text (verdict, tf_session_get_sample (self->session), FALSE);
+  tf_verdict_sign_set (self->sign, signs[verdict->kind]);
+  set_label (self->verdict, tf_words_verdict_name (verdict->kind));
+  set_label (self->verdict_why, sentence);
+  gtk_widget_remove_css_class (GTK_WIDGET (self->verdict), "breaks");
+  if (verdict->kind == TF_VERDICT_BREAKS)
+    gtk_widget_add_css_class (GTK_WIDGET (self->verdict), "breaks");
+}
+
+static void
+show_cautions (TfSlip *self, const TfMeasure *m)
+{
+  GString *text = g_string_new (NULL);
+  for (guint k = 0; k < tf_notes_get_n (m->cautions); k++)
+    {
+      g_autofree char *sentence = tf_note_dup_text (tf_notes_get (m->cautions, k), FALSE);
+      g_string_append_printf (text, "%s%s", k > 0 ? "\n" : "", sentence);
+    }
+  set_label (self->cautions, text->str);
+  g_string_free (text, TRUE);
+}
+
+static void
+show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
+{
+  TfVerdict verdict = tf_session_get_verdict (self->session);
+  TfReading reading = { .measure = m, .verdict = &verdict, .row = tf_session_get_sample (self->session),
+                        .method = method, .at_rest = tf_session_is_at_rest (self->session) };
+  for (guint k = 0; k < TF_N_LINES; k++)
+    {
+      g_autofree char *value = tf_line_dup_value (k, &reading), *under = tf_line_dup_under (k, &reading);
+      g_autofree char *how = tf_line_dup_how (k, &reading);
+      tf_slip_row_set (self->row[k], tf_line_name (k), value, under, how);
+    }
+  show_dial (self, m, &verdict);
+  show_verdict (self, &verdict);
+  show_cautions (self, m);
+}
+
+/* -- class and note ---------------------------------------------------------------------------------------- */
+
+static void
+show_class (TfSlip *self, const char *text)
+{
+  gboolean delta = strstr (text, "δ") != NULL;
+  g_autofree char *base = g_strdup (text);
+  if (delta)
+    *strstr (base, "δ") = '\0';
+  gtk_toggle_button_set_active (self->class_alpha, strcmp (base, "α") == 0);
+  gtk_toggle_button_set_active (self->class_beta, strcmp (base, "β") == 0);
+  gtk_toggle_button_set_active (self->class_beta_gamma, strcmp (base, "βγ") == 0);
+  gtk_toggle_button_set_active (self->class_gamma, strcmp (base, "γ") == 0);
+  gtk_toggle_button_set_active (self->class_delta, delta);
+}
+
+static char *
+dup_note (TfSlip *self)
+{
+  GtkTextBuffer *buffer = gtk_text_view_get_buffer (self->note);
+  GtkTextIter start, end;
+  gtk_text_buffer_get_bounds (buffer, &start, &end);
+  return gtk_text_buffer_get_text (buffer, &start, &end, FALSE);
+}
+
+/* What stands in the note is kept for the region it was written for, also when another region is chosen first. */
+static void
+leave_note (TfSlip *self)
+{
+  if (self->noted == NULL || self->noted != tf_session_get_region (self->session))
+    return;
+  g_autofree char *text = dup_note (self);
+  tf_session_set_note (self->session, g_strstrip (text));
+}
+
+static void
+show_judged (TfSlip *self, TfRegionItem *region, gboolean drawing)
+{
+  gboolean mark = !drawing && region != NULL && !tf_region_item_get_row (region)->is_hint;
+  gtk_widget_set_visible (self->judged, mark);
+  if (!mark)
+    {
+      g_clear_object (&self->noted);
+      return;
+    }
+  const TfRow *row = tf_region_item_get_row (region);
+  self->setting = TRUE;
+  show_class (self, row->mw_class);
+  gboolean writing = gtk_widget_has_focus (GTK_WIDGET (self->note)) && self->noted != NULL
+                     && tf_region_item_is (self->noted, row->mark, row->is_hint);
+  g_set_object (&self->noted, region);
+  g_autofree char *now = dup_note (self);
+  if (!writing && strcmp (now, row->note) != 0)
+    gtk_text_buffer_set_text (gtk_text_view_get_buffer (self->note), row->note, -1);
+  self->setting = FALSE;
+}
+
+/* -- all of it ------------------------------------------------------------------------------------------------ */
+
+static void
+choice_changed (TfSlip *self)
+{
+  const TfVertex *line;
+  guint n;
+  tf_session_get_line (self->session, &line, &n);
+  gboolean drawing = n > 0 || tf_session_get_draft (self->session) != NULL;
+  TfRegionItem *region = tf_session_get_region (self->session);
+  if (!drawing && region == NULL)
+    {
+      g_clear_object (&self->noted);
+      gtk_stack_set_visible_child_name (self->stack, "frame");
+      return;
+    }
+  const TfMeasure *m = tf_session_get_measure (self->session);
+  const char *method = drawing ? tf_session_get_method (self->session) : tf_region_item_get_row (region)->method;
+  gtk_stack_set_visible_child_name (self->stack, "region");
+  show_head (self, drawing, region, m);
+  gtk_widget_set_visible (self->numbers, m != NULL);
+  set_label (self->problem, m == NULL ? tf_session_get_measure_problem (self->session) : NULL);
+  if (m != NULL)
+    show_numbers (self, m, method);
+  show_judged (self, region, drawing);
+}
+
+static void
+status_changed (TfSlip *self)
+{
+  set_label (self->saved, tf_session_get_saved (self->session));
+}
+
+static void
+replaces_toggled (TfSlip *self)
+{
+  tf_session_set_replaces (self->session, gtk_check_button_get_active (self->replaces));
+}
+
+static void
+note_left (TfSlip *self)
+{
+  if (!self->setting)
+    leave_note (self);
+}
+
+static gboolean
+note_key (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state, TfSlip *self)
+{
+  if (key != GDK_KEY_Return || (state & GDK_CONTROL_MASK) == 0)
+    return FALSE;
+  leave_note (self);
+  return TRUE;
+}
+
+void
+tf_slip_set_session (TfSlip *self, TfSession *session)
+{
+  g_return_if_fail (TF_IS_SLIP (self) && TF_IS_SESSION (session) && self->session == NULL);
+  self->session = g_object_ref (session);
+  tf_slip_frame_set_session (self->frame_page, session);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self, G_CONNECT_SWAPPED);
+  choice_changed (self);
+  status_changed (self);
+}
+
+static void
+dispose (GObject *object)
+{
+  TfSlip *self = TF_SLIP (object);
+  GtkWidget *child = gtk_widget_get_first_child (GTK_WIDGET (self));
+  g_clear_object (&self->noted);
+  g_clear_object (&self->session);
+  g_clear_pointer (&child, gtk_widget_unparent);
+  G_OBJECT_CLASS (tf_slip_parent_class)->dispose (object);
+}
+
+static void
+bind_children (GtkWidgetClass *widget)
+{
+  gtk_widget_class_bind_template_child (widget, TfSlip, stack);
+  gtk_widget_class_bind_template_child (widget, TfSlip, title);
+  gtk_widget_class_bind_template_child (widget, TfSlip, place);
+  gtk_widget_class_bind_template_child (widget, TfSlip, origin);
+  gtk_widget_class_bind_template_child (widget, TfSlip, longitude);
+  gtk_widget_class_bind_template_child (widget, TfSlip, saved);
+  gtk_widget_class_bind_template_child (widget, TfSlip, problem);
+  gtk_widget_class_bind_template_child (widget, TfSlip, keep_box);
+  gtk_widget_class_bind_template_child (widget, TfSlip, keep);
+  gtk_widget_class_bind_template_child (widget, TfSlip, drop);
+  gtk_widget_class_bind_template_child (widget, TfSlip, withdraw);
+  gtk_widget_class_bind_template_child (widget, TfSlip, discard);
+  gtk_widget_class_bind_template_child (widget, TfSlip, replaces);
+  gtk_widget_class_bind_template_child (widget, TfSlip, numbers);
+  gtk_widget_class_bind_template_child (widget, TfSlip, dial);
+  gtk_widget_class_bind_template_child (widget, TfSlip, sign);
+  gtk_widget_class_bind_template_child (widget, TfSlip, verdict);
+  gtk_widget_class_bind_template_child (widget, TfSlip, verdict_why);
+  gtk_widget_class_bind_template_child (widget, TfSlip, rows);
+  gtk_widget_class_bind_template_child (widget, TfSlip, cautions);
+  gtk_widget_class_bind_template_child (widget, TfSlip, judged);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_box);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_alpha);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_beta);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_beta_gamma);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_gamma);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_delta);
+  gtk_widget_class_bind_template_child (widget, TfSlip, note);
+  gtk_widget_class_bind_template_child (widget, TfSlip, frame_page);
+}
+
+static void
+tf_slip_class_init (TfSlipClass *klass)
+{
+  GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
+  G_OBJECT_CLASS (klass)->dispose = dispose;
+  g_type_ensure (TF_TYPE_DIAL_VIEW);
+  g_type_ensure (TF_TYPE_VERDICT_SIGN);
+  g_type_ensure (TF_TYPE_SLIP_FRAME);
+  gtk_widget_class_set_layout_manager_type (widget, GTK_TYPE_BIN_LAYOUT);
+  gtk_widget_class_set_css_name (widget, "slip");
+  gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/slip.ui");
+  bind_children (widget);
+  gtk_widget_class_bind_template_callback (widget, replaces_toggled);
+  gtk_widget_class_bind_template_callback (widget, note_left);
+  gtk_widget_class_bind_template_callback (widget, note_key);
+}
+
+static void
+tf_slip_init (TfSlip *self)
+{
+  gtk_widget_init_template (GTK_WIDGET (self));
+  for (guint k = 0; k < TF_N_LINES; k++)
+    {
+      self->row[k] = g_object_new (TF_TYPE_SLIP_ROW, NULL);
+      gtk_box_append (self->rows, GTK_WIDGET (self->row[k]));
+    }
+}

@@ -1,0 +1,25 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+#include "tf-window.h"
+
+G_BEGIN_DECLS
+
+/* tf-window-actions.c */
+void tf_window_add_actions (TfWindow *window);
+/** tf_window_update_actions: which commands are possible now, and the state of those that have one */
+void tf_window_update_actions (TfWindow *window);
+/* tf-window-files.c: choosing files, dropping them, asking for names */
+void tf_window_choose_ledger (TfWindow *window);
+void tf_window_choose_new_ledger (TfWindow *window);
+void tf_window_choose_frames (TfWindow *window);
+void tf_window_open_demo (TfWindow *window);
+void tf_window_add_drop (TfWindow *window);
+/** tf_window_ask_person: @then: (nullable): window action to activate when a name was given */
+void tf_window_ask_person (TfWindow *window, const char *then);
+void tf_window_show_about (TfWindow *window);
+void tf_window_show_cautions (TfWindow *window);
+
+G_END_DECLS

@@ -1,0 +1,341 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-window.h"
+
+#include <math.h>
+#include <string.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-plate-pane.h"
+#include "tf-preferences.h"
+#include "tf-roll.h"
+#include "tf-slip-words.h"
+#include "tf-slip.h"
+#include "tf-window-private.h"
+#include "tf-wings-view.h"
+
+struct _TfWindow
+{
+  AdwApplicationWindow parent;
+  AdwToastOverlay *toasts;
+  GtkStack *stack;
+  GtkMenuButton *ledger_button;
+  GtkLabel *ledger_name, *age, *problem, *ledger_problem, *wings_words;
+  GtkButton *person_button;
+  GtkRevealer *problem_bar, *ledger_bar, *loose_bar;
+  GtkWidget *wings_offer;
+  TfRoll *roll;
+  TfPlatePane *plate_pane;
+  TfSlip *slip;
+  TfWingsView *wings;
+  TfSession *session;
+  guint age_timer;
+};
+
+G_DEFINE_FINAL_TYPE (TfWindow, tf_window, ADW_TYPE_APPLICATION_WINDOW)
+
+enum { AGE_SECONDS = 30, TOAST_SECONDS = 4 };
+static const char sqlite_magic[] = "SQLite format 3";
+
+TfSession *
+tf_window_get_session (TfWindow *self)
+{
+  return self->session;
+}
+
+void
+tf_window_say (TfWindow *self, const char *text)
+{
+  g_autofree char *plain = g_markup_escape_text (text, -1);
+  AdwToast *toast = adw_toast_new (plain);
+  adw_toast_set_timeout (toast, TOAST_SECONDS);
+  adw_toast_overlay_add_toast (self->toasts, toast);
+}
+
+/* -- the age of the newest frame --------------------------------------------------------------------- */
+
+static double
+age_of (TfTime newest)
+{
+  g_autoptr (GDateTime) now = g_date_time_new_now_utc ();
+  TfTime time = tf_time_from_calendar (g_date_time_get_year (now), g_date_time_get_month (now),
+                                       g_date_time_get_day_of_month (now), g_date_time_get_hour (now),
+                                       g_date_time_get_minute (now), g_date_time_get_seconds (now), TF_SCALE_UTC);
+  return time.s - newest.s;
+}
+
+static void
+show_age (TfWindow *self)
+{
+  double cadence;
+  TfTime newest = tf_session_get_newest (self->session, &cadence);
+  gtk_widget_set_visible (GTK_WIDGET (self->age), tf_time_is_known (newest));
+  if (!tf_time_is_known (newest))
+    return;
+  double age = age_of (newest);
+  gboolean late = isfinite (cadence) && age > 2 * cadence;
+  g_autofree char *words = tf_words_dup_age (age), *step = tf_words_dup_age (cadence);
+  g_autofree char *text = g_strdup_printf (late ? _ ("newest %s · late") : _ ("newest %s"), words);
+  g_autofree char *iso = tf_time_dup_iso (newest, 0);
+  g_autofree char *tip = g_strdup_printf (_ ("Newest frame: %s. Usual step between frames: %s."), iso, step);
+  gtk_label_set_label (self->age, text);
+  gtk_widget_set_tooltip_text (GTK_WIDGET (self->age), tip);
+  if (late)
+    gtk_widget_add_css_class (GTK_WIDGET (self->age), "late");
+  else
+    gtk_widget_remove_css_class (GTK_WIDGET (self->age), "late");
+}
+
+static gboolean
+age_tick (gpointer data)
+{
+  show_age (data);
+  return G_SOURCE_CONTINUE;
+}
+
+/* -- following the session ------------------------------------------------------------------------------ */
+
+static void
+show_page (TfWindow *self)
+{
+  gboolean ledger = tf_session_has_ledger (self->session);
+  gboolean loading = tf_session_get_ledger_path (self->session) != NULL && !ledger
+                     && tf_session_get_ledger_problem (self->session) == NULL;
+  guint n = tf_session_get_n_frames (self->session);
+  const char *page = n > 0 ? "work" : ledger ? "no-frames" : loading ? "opening" : "welcome";
+  if (n == 0 && tf_session_get_progress (self->session, NULL) != NULL)
+    page = "taking-in";
+  gtk_stack_set_visible_child_name (self->stack, page);
+  gtk_revealer_set_reveal_child (self->loose_bar, n > 0 && tf_session_get_ledger_path (self->session) == NULL);
+}
+
+static void
+ledger_changed (TfWindow *self)
+{
+  g_autofree char *name = tf_session_dup_ledger_name (self->session);
+  const char *person = tf_session_get_person (self->session);
+  const char *problem = tf_session_get_ledger_problem (self->session);
+  const char *path = tf_session_get_ledger_path (self->session);
+  gtk_label_set_label (self->ledger_name, name != NULL ? name : _ ("no ledger"));
+  g_autofree char *title = g_strdup_printf (name != NULL ? "%s · Tiltfield" : "Tiltfield", name);
+  gtk_window_set_title (GTK_WINDOW (self), title);
+  gtk_button_set_label (self->person_button, person != NULL ? person : _ ("who?"));
+  gtk_label_set_label (self->ledger_problem, problem != NULL ? problem : "");
+  gtk_revealer_set_reveal_child (self->ledger_bar, problem != NULL);
+  if (tf_session_has_ledger (self->session))
+    tf_preferences_set ("ledger", path);
+  show_page (self);
+  tf_window_update_actions (self);
+}
+
+static void
+frames_changed (TfWindow *self)
+{
+  show_page (self);
+  show_age (self);
+  tf_window_update_actions (self);
+}
+
+static void
+status_changed (TfWindow *self)
+{
+  const char *problem = tf_session_get_problem (self->session);
+  guint pending = tf_session_get_pending (self->session);
+  g_autofree char *text = NULL;
+  if (problem != NULL && pending > 1)
+    text = g_strdup_printf (ngettext ("%s %u more deed waits behind it.", "%s %u more deeds wait behind it.", pending - 1),
+                            problem, pending - 1);
+  gtk_label_set_label (self->problem, text != NULL ? text : problem != NULL ? problem : "");
+  gtk_revealer_set_reveal_child (self->problem_bar, problem != NULL);
+  show_page (self);
+  tf_window_update_actions (self);
+}
+
+static void
+points_changed (TfWindow *self)
+{
+  guint hidden;
+  tf_session_get_dots (self->session, &hidden);
+  gboolean bare = tf_session_get_n_marks (self->session) == 0;
+  gtk_widget_set_visible (self->wings_offer, bare && hidden > 0);
+  g_autofree char *text
+      = g_strdup_printf (ngettext ("No marks yet: nobody has judged. %u hint waits.",
+                                   "No marks yet: nobody has judged. %u hints wait.", hidden), hidden);
+  gtk_label_set_label (self->wings_words, text);
+  tf_window_update_actions (self);
+}
+
+static void
+person_needed (TfWindow *self)
+{
+  tf_window_ask_person (self, NULL);
+}
+
+static void
+message (TfSession *session, const char *text, TfWindow *self)
+{
+  tf_window_say (self, text);
+}
+
+static void
+connect_session (TfWindow *self)
+{
+  TfSession *session = self->session;
+  g_signal_connect_object (session, "ledger-changed", G_CALLBACK (ledger_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frames-changed", G_CALLBACK (frames_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "points-changed", G_CALLBACK (points_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "person-needed", G_CALLBACK (person_needed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "regions-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "view-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "message", G_CALLBACK (message), self, 0);
+}
+
+/* -- opening ------------------------------------------------------------------------------------------------ */
+
+gboolean
+tf_window_is_ledger (const char *path)
+{
+  if (g_str_has_suffix (path, ".ledger"))
+    return TRUE;
+  char first[sizeof sqlite_magic] = { 0 };
+  FILE *file = fopen (path, "rb");
+  if (file == NULL)
+    return FALSE;
+  gsize n = fread (first, 1, sizeof first, file);
+  fclose (file);
+  return n == sizeof first && memcmp (first, sqlite_magic, sizeof first) == 0;
+}
+
+void
+tf_window_open (TfWindow *self, char *const *paths)
+{
+  g_return_if_fail (TF_IS_WINDOW (self) && paths != NULL);
+  g_autoptr (GPtrArray) frames = g_ptr_array_new ();
+  const char *ledger = NULL;
+  for (guint k = 0; paths[k] != NULL; k++)
+    {
+      if (tf_window_is_ledger (paths[k]))
+        ledger = paths[k];
+      else
+        g_ptr_array_add (frames, paths[k]);
+    }
+  g_ptr_array_add (frames, NULL);
+  if (ledger != NULL)
+    tf_session_open_ledger (self->session, ledger, 0);
+  if (frames->len > 1)
+    tf_session_add_frames (self->session, (char *const *)frames->pdata);
+}
+
+/* -- closing -------------------------------------------------------------------------------------------------- */
+
+static void
+close_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *self)
+{
+  if (strcmp (answer, "close") != 0)
+    return;
+  while (tf_session_get_problem (self->session) != NULL)
+    tf_session_give_up (self->session);
+  gtk_window_destroy (GTK_WINDOW (self));
+}
+
+static gboolean
+close_request (GtkWindow *window)
+{
+  TfWindow *self = TF_WINDOW (window);
+  if (tf_session_get_problem (self->session) == NULL)
+    return FALSE; /* deeds on their way are waited for by the session */
+  GtkWidget *dialog = adw_message_dialog_new (window, _ ("Close without saving?"), tf_session_get_problem (self->session));
+  adw_message_dialog_add_responses (ADW_MESSAGE_DIALOG (dialog), "stay", _ ("_Stay"), "close", _ ("_Close"), NULL);
+  adw_message_dialog_set_response_appearance (ADW_MESSAGE_DIALOG (dialog), "close", ADW_RESPONSE_DESTRUCTIVE);
+  g_signal_connect_object (dialog, "response", G_CALLBACK (close_answered), self, 0);
+  gtk_window_present (GTK_WINDOW (dialog));
+  return TRUE;
+}
+
+static void
+dispose (GObject *object)
+{
+  TfWindow *self = TF_WINDOW (object);
+  g_clear_handle_id (&self->age_timer, g_source_remove);
+  if (self->session != NULL)
+    {
+      g_signal_handlers_disconnect_by_data (self->session, self);
+      tf_session_close (self->session);
+    }
+  g_clear_object (&self->session);
+  G_OBJECT_CLASS (tf_window_parent_class)->dispose (object);
+}
+
+static void
+bind_children (GtkWidgetClass *widget)
+{
+  gtk_widget_class_bind_template_child (widget, TfWindow, toasts);
+  gtk_widget_class_bind_template_child (widget, TfWindow, stack);
+  gtk_widget_class_bind_template_child (widget, TfWindow, ledger_button);
+  gtk_widget_class_bind_template_child (widget, TfWindow, ledger_name);
+  gtk_widget_class_bind_template_child (widget, TfWindow, age);
+  gtk_widget_class_bind_template_child (widget, TfWindow, person_button);
+  gtk_widget_class_bind_template_child (widget, TfWindow, problem_bar);
+  gtk_widget_class_bind_template_child (widget, TfWindow, problem);
+  gtk_widget_class_bind_template_child (widget, TfWindow, ledger_bar);
+  gtk_widget_class_bind_template_child (widget, TfWindow, ledger_problem);
+  gtk_widget_class_bind_template_child (widget, TfWindow, loose_bar);
+  gtk_widget_class_bind_template_child (widget, TfWindow, wings_offer);
+  gtk_widget_class_bind_template_child (widget, TfWindow, wings_words);
+  gtk_widget_class_bind_template_child (widget, TfWindow, roll);
+  gtk_widget_class_bind_template_child (widget, TfWindow, plate_pane);
+  gtk_widget_class_bind_template_child (widget, TfWindow, slip);
+  gtk_widget_class_bind_template_child (widget, TfWindow, wings);
+}
+
+static void
+tf_window_class_init (TfWindowClass *klass)
+{
+  GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
+  G_OBJECT_CLASS (klass)->dispose = dispose;
+  GTK_WINDOW_CLASS (klass)->close_request = close_request;
+  g_type_ensure (TF_TYPE_ROLL);
+  g_type_ensure (TF_TYPE_PLATE_PANE);
+  g_type_ensure (TF_TYPE_SLIP);
+  g_type_ensure (TF_TYPE_WINGS_VIEW);
+  gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/window.ui");
+  bind_children (widget);
+}
+
+static void
+restore_preferences (TfWindow *self)
+{
+  g_autofree char *person = tf_preferences_dup ("person"), *palette = tf_preferences_dup ("palette");
+  if (person != NULL)
+    tf_session_set_person (self->session, person);
+  if (g_strcmp0 (palette, "amber-indigo") == 0)
+    tf_session_set_palette (self->session, TF_PALETTE_AMBER_INDIGO);
+}
+
+static void
+tf_window_init (TfWindow *self)
+{
+  gtk_widget_init_template (GTK_WIDGET (self));
+  self->session = tf_session_new ();
+  connect_session (self);
+  tf_window_add_actions (self);
+  tf_window_add_drop (self);
+  restore_preferences (self);
+  tf_roll_set_session (self->roll, self->session);
+  tf_plate_pane_set_session (self->plate_pane, self->session);
+  tf_slip_set_session (self->slip, self->session);
+  tf_wings_view_set_session (self->wings, self->session);
+  self->age_timer = g_timeout_add_seconds (AGE_SECONDS, age_tick, self);
+  ledger_changed (self);
+  points_changed (self);
+}
+
+TfWindow *
+tf_window_new (GtkApplication *application)
+{
+  return g_object_new (TF_TYPE_WINDOW, "application", application, NULL);
+}
