@@ -26,6 +26,9 @@ const TfNoteKind tf_note_kinds_ledger[] = {
   { "check-schema", TF_NOTE_STRONG, N_ ("{0}: the table, index or view {1} is not as this version makes it") },
   { "clock-set-back", TF_NOTE_CAUTION,
     N_ ("{0}: this machine's clock is {1:.1f} h before the newest act; set it right. The order of acts does not depend on it") },
+  { "frame-missing", TF_NOTE_CAUTION,
+    N_ ("{0}: the frame {1} is not at that place as it was when it was filled in; its rows were not measured anew. Put it back, or "
+        "fill it from where it is now") },
   { "ledger-copied", TF_NOTE_INFO,
     N_ ("{0} is a copy of a ledger that is still in its place; what is done here is recorded as a line of its own") },
   { "ledger-from-elsewhere", TF_NOTE_INFO,
@@ -40,6 +43,9 @@ const TfNoteKind tf_note_kinds_ledger[] = {
   { "ledger-older-copy", TF_NOTE_CAUTION,
     N_ ("{0} lacks acts that were recorded here before: an older copy was put back, or another copy went on. What is done now is "
         "recorded as a line of its own; look for the newer file") },
+  { "measure-differs", TF_NOTE_STRONG,
+    N_ ("{0}: {1} on {2}, measured anew, differs in {3}; the ledger or the frame was changed, or another version measures "
+        "differently") },
   { "replica-state-unwritten", TF_NOTE_CAUTION,
     N_ ("the folder {0} cannot be written, so the next opening of this ledger will begin a new line of acts; undo will not reach "
         "back past it") },

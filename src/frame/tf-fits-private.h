@@ -32,4 +32,7 @@ TfFits *tf_fits_reopen (const TfFits *fits, GError **error);
 /** tf_fits_read_rows: @n rows from row @first (0-based) of @plane (1-based) as physical values; BLANK is NaN. */
 gboolean tf_fits_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, GError **error);
 
+/** tf_fits_scan: FALSE and READ when an HDU's claims would make CFITSIO stumble; TRUE for all else, also for no FITS. */
+gboolean tf_fits_scan (const char *path, gboolean gzip, GError **error);
+
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFits, tf_fits_close)

@@ -167,7 +167,10 @@ tf_frame_info_read (const TfHeader *header, guint width, guint height)
   tf_info_read_time (repaired, info);
   tf_info_read_observer (repaired, info);
   if (!is_solar (repaired))
-    refuse (info, tf_note_new ("not-the-sun", ""));
+    {
+      refuse (info, tf_note_new ("not-the-sun", ""));
+      g_ptr_array_set_size (info->cautions, 0); /* "taken as a field" would be no longer true */
+    }
   else if (!tf_info_read_geometry (repaired, info))
     {
       const char *type = tf_header_get (repaired, "CTYPE1");

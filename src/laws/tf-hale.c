@@ -59,25 +59,6 @@ typedef struct
   GArray *breaks;  /* guint8 */
 } Judged;
 
-static double
-share_of_rows (const guint *rows, guint n, gpointer data)
-{
-  const guint8 *breaks = data;
-  guint sum = 0;
-  for (guint k = 0; k < n; k++)
-    sum += breaks[rows[k]];
-  return n == 0 ? NAN : (double)sum / n;
-}
-
-static guint
-count_regions (const GArray *regions)
-{
-  g_autoptr (GHashTable) seen = g_hash_table_new (NULL, NULL);
-  for (guint k = 0; k < regions->len; k++)
-    g_hash_table_add (seen, GUINT_TO_POINTER (g_array_index (regions, guint32, k)));
-  return g_hash_table_size (seen);
-}
-
 /* Counts a group's rows, and gathers those that were judged. */
 static void
 gather (const Group *group, TfHaleRow *row, Judged *judged)
@@ -118,7 +99,7 @@ fill_row (const Group *group, const TfHaleParams *params)
   Judged judged = { regions, breaks };
   gather (group, &row, &judged);
   row.n = row.keeps + row.breaks;
-  row.regions = count_regions (regions);
+  row.regions = tf_count_distinct ((const guint32 *)regions->data, row.n);
   row.share = row.n == 0 ? NAN : (double)row.breaks / row.n;
   guint all = row.n + row.cannot_say;
   row.bounds.low = all == 0 ? NAN : (double)row.breaks / all;
@@ -126,8 +107,8 @@ fill_row (const Group *group, const TfHaleParams *params)
   row.wilson = tf_wilson (row.breaks, row.n, params->level);
   row.clopper_pearson = tf_clopper_pearson (row.breaks, row.n, params->level);
   row.cluster
-      = tf_bootstrap_clusters ((const guint32 *)regions->data, row.n, (guint)MAX (params->draws, 0),
-                               (guint64)params->seed, params->level, share_of_rows, breaks->data);
+      = tf_bootstrap_share ((const guint32 *)regions->data, (const guint8 *)breaks->data, row.n,
+                            (guint)MAX (params->draws, 0), (guint64)params->seed, params->level);
   return row;
 }
 

@@ -17,12 +17,15 @@ struct _TfJoyPoints
   guint n;
   double *x, *y, *flux, *count;
   int *bin;
-  guint *by_ratio, n_ratio;        /* points with x > 0, by y / x */
-  guint *by_x, *by_y;              /* all points, by x and then y; by y */
-  double bin_scatter[TF_JOY_BINS]; /* of y; over the whole sample */
+  guint *by_ratio, n_ratio;        /* points with x > 0, by y / x; NULL at first */
+  guint *by_x, *by_y;              /* all points, by x and then y; by y; NULL at first */
+  double bin_scatter[TF_JOY_BINS]; /* of y; over the whole sample; 0 before it is measured */
   gboolean drawn;                  /* counts are a draw's */
   double sen_slope, sen_step;      /* the whole sample's slope, and how far draws go from it */
 };
+
+/** tf_joy_points_order: makes by_ratio, or by_x and by_y, if they are not there yet. */
+void tf_joy_points_order (TfJoyPoints *points, gboolean by_ratio);
 
 /** TfJoyRunning: a weighted median as values come in order: the first at which half of the weight
  * is passed, midway to the next when it is met within rounding. Begin with half and value NaN set.

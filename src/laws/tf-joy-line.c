@@ -4,6 +4,7 @@
 #include "tf-joy-line-private.h"
 
 #include <math.h>
+#include <stdlib.h>
 #include <string.h>
 
 #include "tf-proportion.h"
@@ -14,41 +15,54 @@ enum
 };
 #define BIN_DEG 5.0
 
-static int
-compare_by (gconstpointer a, gconstpointer b, gpointer data)
+/* A point on its way into an order: by its first key, then by its second. */
+typedef struct
 {
-  const double *keys = data;
-  double left = keys[*(const guint *)a], right = keys[*(const guint *)b];
-  return (left > right) - (left < right);
-}
+  double first, second;
+  guint row;
+} Place;
 
 static int
-compare_places (gconstpointer a, gconstpointer b, gpointer data)
+compare_places (gconstpointer a, gconstpointer b)
 {
-  const TfJoyPoints *points = data;
-  int by_x = compare_by (a, b, points->x);
-  return by_x != 0 ? by_x : compare_by (a, b, points->y);
+  const Place *left = a, *right = b;
+  int by_first = (left->first > right->first) - (left->first < right->first);
+  return by_first != 0 ? by_first : (left->second > right->second) - (left->second < right->second);
 }
 
-static void
-order_points (TfJoyPoints *points)
+static guint *
+take_order (Place *places, guint n)
 {
-  g_autofree double *ratio = g_new (double, points->n);
-  points->by_ratio = g_new (guint, points->n);
-  points->by_x = g_new (guint, points->n);
-  points->by_y = g_new (guint, points->n);
-  for (guint k = 0; k < points->n; k++)
-    {
-      ratio[k] = points->y[k] / points->x[k];
-      points->by_x[k] = points->by_y[k] = k;
-      if (points->x[k] > 0.0)
-        points->by_ratio[points->n_ratio++] = k;
-    }
-  if (points->n == 0)
+  guint *order = g_new (guint, n + 1);
+  if (n > 0)
+    qsort (places, n, sizeof *places, compare_places);
+  for (guint k = 0; k < n; k++)
+    order[k] = places[k].row;
+  return order;
+}
+
+void
+tf_joy_points_order (TfJoyPoints *points, gboolean by_ratio)
+{
+  if (by_ratio ? points->by_ratio != NULL : points->by_x != NULL)
     return;
-  g_qsort_with_data (points->by_ratio, (int)points->n_ratio, sizeof (guint), compare_by, ratio);
-  g_qsort_with_data (points->by_x, (int)points->n, sizeof (guint), compare_places, points);
-  g_qsort_with_data (points->by_y, (int)points->n, sizeof (guint), compare_by, points->y);
+  g_autofree Place *places = g_new (Place, points->n);
+  guint m = 0;
+  for (guint k = 0; by_ratio && k < points->n; k++)
+    if (points->x[k] > 0.0)
+      places[m++] = (Place){ points->y[k] / points->x[k], points->x[k], k };
+  if (by_ratio)
+    {
+      points->by_ratio = take_order (places, m);
+      points->n_ratio = m;
+      return;
+    }
+  for (guint k = 0; k < points->n; k++)
+    places[k] = (Place){ points->x[k], points->y[k], k };
+  points->by_x = take_order (places, points->n);
+  for (guint k = 0; k < points->n; k++)
+    places[k] = (Place){ points->y[k], points->x[k], k };
+  points->by_y = take_order (places, points->n);
 }
 
 static double
@@ -70,6 +84,8 @@ static void
 measure_scatter (TfJoyPoints *points)
 {
   double greatest = 0.0;
+  if (points->bin_scatter[0] > 0.0)
+    return;
   for (int b = 0; b < TF_JOY_BINS; b++)
     {
       points->bin_scatter[b] = scatter_of_bin (points, b);
@@ -95,8 +111,6 @@ tf_joy_points_new (guint n, const double *x, const double *y, const double *flux
       points->count[k] = 1.0;
       points->bin[k] = CLAMP ((int)floor (lat[k] / BIN_DEG), 0, TF_JOY_BINS - 1);
     }
-  order_points (points);
-  measure_scatter (points);
   return points;
 }
 
@@ -212,6 +226,7 @@ tf_joy_running_add (TfJoyRunning *median, double value, double weight)
 TfJoyLine
 tf_joy_line_robust (TfJoyPoints *points)
 {
+  tf_joy_points_order (points, TRUE);
   double total = 0.0;
   for (guint k = 0; k < points->n; k++)
     total += points->count[k] * points->x[k];
@@ -225,8 +240,10 @@ tf_joy_line_robust (TfJoyPoints *points)
 }
 
 static TfJoyLine
-bin_medians (const TfJoyPoints *points, gboolean free_line)
+bin_medians (TfJoyPoints *points, gboolean free_line)
 {
+  tf_joy_points_order (points, FALSE);
+  measure_scatter (points);
   double total[TF_JOY_BINS] = { 0 }, sum_x[TF_JOY_BINS] = { 0 };
   for (guint k = 0; k < points->n; k++)
     {

@@ -163,6 +163,7 @@ median_of (const TfJoyPoints *points, const guint *order, const double *values)
 TfJoyLine
 tf_joy_line_free_robust (TfJoyPoints *points)
 {
+  tf_joy_points_order (points, FALSE);
   Pairs pairs = { .points = points, .pairs = count_pairs (points) };
   if (!(pairs.pairs > 0.0))
     return (TfJoyLine){ NAN, NAN };

@@ -166,15 +166,6 @@ gather (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisp
   return c;
 }
 
-static guint
-count_regions (const Columns *c)
-{
-  g_autoptr (GHashTable) seen = g_hash_table_new (NULL, NULL);
-  for (guint k = 0; k < c->n; k++)
-    g_hash_table_add (seen, GUINT_TO_POINTER (c->region[k]));
-  return g_hash_table_size (seen);
-}
-
 /* 1.4826 times the median distance from the median. @values is overwritten. */
 static double
 robust_scatter (double *values, guint n)
@@ -277,7 +268,7 @@ tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int he
   TfJoyFit fit = { .cycle = cycle,
                    .hemisphere = hemisphere,
                    .n = c.n,
-                   .regions = count_regions (&c),
+                   .regions = tf_count_distinct (c.region, c.n),
                    .no_polarity = c.no_polarity,
                    .slope = NAN,
                    .intercept = NAN,

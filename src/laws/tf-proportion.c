@@ -183,9 +183,12 @@ percentiles (double *values, guint n, guint draws, double level)
                        tf_quantile (values, n, 0.5 * (1.0 + level)) };
 }
 
-TfInterval
-tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed, double level,
-                       TfResampleFunc func, gpointer data)
+/* What one draw gives. */
+typedef double (*DrawFunc) (const Clusters *clusters, gsl_rng *rng, gpointer data);
+
+static TfInterval
+bootstrap (const guint32 *cluster, guint n, guint draws, guint64 seed, double level, DrawFunc func,
+           gpointer data)
 {
   if (n == 0 || draws == 0 || !level_is_good (level))
     return NO_INTERVAL;
@@ -195,13 +198,11 @@ tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 see
   if (rng != NULL)
     {
       gsl_rng_set (rng, (unsigned long)seed);
-      g_autoptr (GArray) drawn = g_array_sized_new (FALSE, FALSE, sizeof (guint), n);
       g_autofree double *values = g_new (double, draws);
       guint good = 0;
       for (guint d = 0; d < draws; d++)
         {
-          draw_rows (&clusters, rng, drawn);
-          double value = func ((const guint *)drawn->data, drawn->len, data);
+          double value = func (&clusters, rng, data);
           if (!isnan (value))
             values[good++] = value;
         }
@@ -209,5 +210,68 @@ tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 see
       gsl_rng_free (rng);
     }
   clusters_clear (&clusters);
+  return result;
+}
+
+typedef struct
+{
+  TfResampleFunc func;
+  gpointer data;
+  GArray *drawn; /* guint */
+} Resample;
+
+static double
+draw_statistic (const Clusters *clusters, gsl_rng *rng, gpointer data)
+{
+  Resample *resample = data;
+  draw_rows (clusters, rng, resample->drawn);
+  return resample->func ((const guint *)resample->drawn->data, resample->drawn->len,
+                         resample->data);
+}
+
+TfInterval
+tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed, double level,
+                       TfResampleFunc func, gpointer data)
+{
+  g_autoptr (GArray) drawn = g_array_sized_new (FALSE, FALSE, sizeof (guint), n);
+  Resample resample = { func, data, drawn };
+  return bootstrap (cluster, n, draws, seed, level, draw_statistic, &resample);
+}
+
+/* Sums over each cluster, made at the first draw. */
+typedef struct
+{
+  const guint8 *is;
+  guint *sums;
+} Share;
+
+static double
+draw_share (const Clusters *clusters, gsl_rng *rng, gpointer data)
+{
+  Share *share = data;
+  if (share->sums == NULL)
+    {
+      share->sums = g_new0 (guint, clusters->n);
+      for (guint c = 0; c < clusters->n; c++)
+        for (guint k = clusters->start[c]; k < clusters->start[c + 1]; k++)
+          share->sums[c] += share->is[clusters->rows[k]] != 0;
+    }
+  double sum = 0.0, all = 0.0;
+  for (guint k = 0; k < clusters->n; k++)
+    {
+      guint c = (guint)gsl_rng_uniform_int (rng, clusters->n);
+      sum += share->sums[c];
+      all += clusters->start[c + 1] - clusters->start[c];
+    }
+  return sum / all;
+}
+
+TfInterval
+tf_bootstrap_share (const guint32 *cluster, const guint8 *is, guint n, guint draws, guint64 seed,
+                    double level)
+{
+  Share share = { is, NULL };
+  TfInterval result = bootstrap (cluster, n, draws, seed, level, draw_share, &share);
+  g_free (share.sums);
   return result;
 }

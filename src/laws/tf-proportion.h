@@ -44,5 +44,9 @@ typedef double (*TfResampleFunc) (const guint *rows, guint n, gpointer data);
  */
 TfInterval tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed,
                                   double level, TfResampleFunc func, gpointer data);
+/** tf_bootstrap_share: tf_bootstrap_clusters() of the share of rows whose @is is not 0, by the same
+ * draws, in time that goes with the clusters and not with the rows. */
+TfInterval tf_bootstrap_share (const guint32 *cluster, const guint8 *is, guint n, guint draws,
+                               guint64 seed, double level);
 
 G_END_DECLS

@@ -81,29 +81,37 @@ compare_ids (gconstpointer a, gconstpointer b)
   return (left > right) - (left < right);
 }
 
+guint
+tf_count_distinct (const guint32 *ids, guint n)
+{
+  guint count = 0;
+  g_autofree guint32 *sorted = g_memdup2 (ids, n * sizeof *ids);
+  if (n > 0)
+    qsort (sorted, n, sizeof *sorted, compare_ids);
+  for (guint k = 0; k < n; k++)
+    count += k == 0 || sorted[k] != sorted[k - 1];
+  return count;
+}
+
 /* How many different numbers stand at @offset of the rows. */
 static guint
-count_distinct (const TfSample *sample, gsize offset)
+count_column (const TfSample *sample, gsize offset)
 {
-  guint n = sample->rows->len, count = 0;
+  guint n = sample->rows->len;
   g_autofree guint32 *ids = g_new (guint32, n);
   for (guint k = 0; k < n; k++)
     ids[k] = *(const guint32 *)((const char *)tf_sample_get (sample, k) + offset);
-  if (n > 0)
-    qsort (ids, n, sizeof *ids, compare_ids);
-  for (guint k = 0; k < n; k++)
-    count += k == 0 || ids[k] != ids[k - 1];
-  return count;
+  return tf_count_distinct (ids, n);
 }
 
 guint
 tf_sample_count_regions (const TfSample *sample)
 {
-  return count_distinct (sample, offsetof (TfSampleRow, region));
+  return count_column (sample, offsetof (TfSampleRow, region));
 }
 
 guint
 tf_sample_count_passages (const TfSample *sample)
 {
-  return count_distinct (sample, offsetof (TfSampleRow, passage));
+  return count_column (sample, offsetof (TfSampleRow, passage));
 }

@@ -60,6 +60,8 @@ guint tf_sample_get_n (const TfSample *sample);
 const TfSampleRow *tf_sample_get (const TfSample *sample, guint k);
 guint tf_sample_count_regions (const TfSample *sample);
 guint tf_sample_count_passages (const TfSample *sample);
+/** tf_count_distinct: how many different numbers @ids holds. */
+guint tf_count_distinct (const guint32 *ids, guint n);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfSample, tf_sample_free)
 

@@ -62,9 +62,9 @@ find_reason (const TfSampleRow *row, const TfVerdictParams *params)
     gboolean holds;
     const char *code;
   } reasons[] = {
+    { tf_verdict_weaker_share (row) < params->weaker_share - SHARE_STEP, "hale-unipolar" },
     { row->leading_polarity == 0, "hale-no-polarity" },
     { isnan (row->lat_deg), "hale-no-place" },
-    { tf_verdict_weaker_share (row) < params->weaker_share - SHARE_STEP, "hale-unipolar" },
     { straddles (row), "hale-straddles" },
     { fabs (row->lat_deg) < params->equator_deg || hemisphere_of (row) == 0, "hale-equator" },
     { row->mu < params->mu_min, "hale-near-limb" },

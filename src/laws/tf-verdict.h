@@ -42,8 +42,8 @@ typedef struct
 /**
  * tf_verdict_judge: keeps, breaks, or cannot say. The first reason in this order is given:
  *
- * - what the source does not hold: "hale-no-polarity", "hale-no-place";
  * - what is no bipole: "hale-unipolar" (weaker polarity below weaker_share of the flux);
+ * - what the source does not hold: "hale-no-polarity", "hale-no-place";
  * - where the law has no sign: "hale-straddles", "hale-equator" (|lat| < equator_deg);
  * - what cannot be seen well: "hale-near-limb" (mu < mu_min), "hale-steep" (|axis tilt| >
  *   steep_deg), "hale-leader-unsure", "hale-witnesses-differ";

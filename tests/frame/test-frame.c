@@ -60,10 +60,13 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   folder = g_dir_make_tmp ("tf-test-frame-XXXXXX", NULL);
   add_header_tests ();
+  add_dialect_tests ();
   add_write_tests ();
   add_pixel_tests ();
   add_picture_tests ();
   add_witness_tests ();
+  add_real_tests ();
+  add_conformance_tests ();
   int bad = g_test_run ();
   g_autoptr (GDir) dir = g_dir_open (folder, 0, NULL);
   for (const char *name; dir != NULL && (name = g_dir_read_name (dir)) != NULL;)

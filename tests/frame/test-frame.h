@@ -5,9 +5,12 @@
 
 #include "tf-frame.h"
 
+void add_conformance_tests (void);
+void add_dialect_tests (void);
 void add_header_tests (void);
 void add_picture_tests (void);
 void add_pixel_tests (void);
+void add_real_tests (void);
 void add_witness_tests (void);
 void add_write_tests (void);
 

@@ -201,6 +201,35 @@ test_bootstrap_width (void)
                  0.15 * half);
 }
 
+static double
+share_of (const guint *rows, guint n, gpointer data)
+{
+  const guint8 *is = data;
+  guint sum = 0;
+  for (guint k = 0; k < n; k++)
+    sum += is[rows[k]];
+  return (double)sum / n;
+}
+
+/* The quick way for shares gives the very digits of the plain one. */
+static void
+test_bootstrap_share (void)
+{
+  guint8 is[N];
+  guint32 cluster[N];
+  g_autoptr (GRand) rand = g_rand_new_with_seed (6);
+  for (guint k = 0; k < N; k++)
+    {
+      is[k] = g_rand_double (rand) < 0.07;
+      cluster[k] = (guint32)g_rand_int_range (rand, 0, 90);
+    }
+  TfInterval plain = tf_bootstrap_clusters (cluster, N, 500, 3, 0.95, share_of, is);
+  TfInterval quick = tf_bootstrap_share (cluster, is, N, 500, 3, 0.95);
+  tf_check_near ("low", quick.low, plain.low, 0.0);
+  tf_check_near ("high", quick.high, plain.high, 0.0);
+  tf_check_nan ("of no rows", tf_bootstrap_share (cluster, is, 0, 500, 3, 0.95).low);
+}
+
 static void
 test_bootstrap_edges (void)
 {
@@ -229,5 +258,6 @@ test_laws_add_proportion (void)
   g_test_add_func ("/laws/quantile/weighted-medians", test_weighted_median);
   g_test_add_func ("/laws/bootstrap/one-seed-one-result", test_bootstrap_repeats);
   g_test_add_func ("/laws/bootstrap/clusters-are-drawn-whole", test_bootstrap_width);
+  g_test_add_func ("/laws/bootstrap/shares-the-quick-way", test_bootstrap_share);
   g_test_add_func ("/laws/bootstrap/edges-have-an-answer", test_bootstrap_edges);
 }

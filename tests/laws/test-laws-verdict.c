@@ -72,6 +72,8 @@ test_other_reasons (void)
 {
   TfSampleRow row = test_laws_row (15.0, 0);
   check_reason (&row, "hale-no-polarity");
+  row.imbalance = -1.0; /* one pole leads nothing */
+  check_reason (&row, "hale-unipolar");
   row = test_laws_row (15.0, -1);
   row.leading_sure = 0;
   check_reason (&row, "hale-leader-unsure");

@@ -60,7 +60,8 @@ def near(what, got, expected, tolerance):
     got, expected = np.asarray(got, float), np.asarray(expected, float)
     assert got.shape == expected.shape and got.size > 0, f"{what}: {got.shape} against {expected.shape}"
     worst = np.abs(got - expected)
-    assert (worst <= tolerance).all(), f"{what}: off by {np.nanmax(worst):.3g} ({np.isnan(worst).sum()} not numbers), allowed {tolerance}"
+    lost = np.isnan(worst).sum()
+    assert (worst <= tolerance).all(), f"{what}: off by {np.nanmax(worst):.3g} ({lost} not numbers), allowed {tolerance}"
     print(f"#   {what}: at most {worst.max():.2g} off ({got.size} compared)")
 
 

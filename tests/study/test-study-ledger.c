@@ -78,7 +78,7 @@ fill (TestLedger *t)
   TfMeasure far = test_study_measure (18, -1);
   far.cmd_deg = 60.1;
   test_study_mark (t, frame, 0, far);
-  TfMeasure small = test_study_measure (18, 1);
+  TfMeasure small = test_study_measure (19, 1);
   small.ephemeral = TRUE;
   test_study_mark (t, frame, 0, small);
   test_study_mark (t, frame, 0, test_study_measure (2, -1));

@@ -67,17 +67,24 @@ test_study_ledger_open (TestLedger *t)
   g_assert_no_error (error);
 }
 
+static void
+remove_tree (const char *path)
+{
+  g_autoptr (GDir) dir = g_dir_open (path, 0, NULL);
+  for (const char *name = dir != NULL ? g_dir_read_name (dir) : NULL; name != NULL;
+       name = g_dir_read_name (dir))
+    {
+      g_autofree char *inside = g_build_filename (path, name, NULL);
+      remove_tree (inside);
+    }
+  g_remove (path);
+}
+
 void
 test_study_ledger_clear (TestLedger *t)
 {
   g_clear_pointer (&t->ledger, tf_ledger_close);
-  g_autoptr (GDir) dir = g_dir_open (t->folder, 0, NULL);
-  for (const char *name = g_dir_read_name (dir); name != NULL; name = g_dir_read_name (dir))
-    {
-      g_autofree char *path = g_build_filename (t->folder, name, NULL);
-      g_remove (path);
-    }
-  g_rmdir (t->folder);
+  remove_tree (t->folder);
   g_clear_pointer (&t->folder, g_free);
   g_clear_pointer (&t->path, g_free);
 }
@@ -151,5 +158,7 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   test_study_add_row ();
   test_study_add_ledger ();
-  return g_test_run ();
+  int result = g_test_run ();
+  remove_tree (state);
+  return result;
 }
