@@ -1,0 +1,200 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <math.h>
+
+#include "tf-export.h"
+#include "tf-mount-wilson.h"
+
+/* The flat columns. A number that is not there is NaN, a text "". Yes/no and whole numbers come as doubles and are NaN when missing.
+ * Values stay in Mx, G and millionths of the hemisphere; the units are written so that standard readers parse them: 1 Mx = 1e-8 Wb,
+ * 1 G = 1e-4 T (VOUnits 1.0; FITS standard 4.0 section 4.3). UCDs are of the UCD1+ list of IVOA.
+ */
+
+/* -- getting at a row ---------------------------------------------------------------------------- */
+
+static char *
+text_or_empty (const char *text)
+{
+  return g_strdup (text != NULL ? text : "");
+}
+
+static double
+int_or_nan (gboolean there, int value)
+{
+  return there ? (double)value : (double)NAN;
+}
+
+static const TfPole *
+pole_of (const TfExportRow *r, gboolean leading)
+{
+  const TfMeasure *m = &r->row->measure;
+  if (m->leading_polarity == 0)
+    return NULL;
+  return (m->leading_polarity > 0) == leading ? &m->positive : &m->negative;
+}
+
+static double
+pole_lat (const TfExportRow *r, gboolean leading)
+{
+  const TfPole *pole = pole_of (r, leading);
+  return pole != NULL ? pole->lat_deg : NAN;
+}
+
+static double
+pole_lon (const TfExportRow *r, gboolean leading)
+{
+  const TfPole *pole = pole_of (r, leading);
+  return pole != NULL ? pole->carrington_lon_deg : NAN;
+}
+
+#define TEXT(name, expression)                                                                     \
+  static char *name (const TfExportRow *r)                                                         \
+  {                                                                                                \
+    return text_or_empty (expression);                                                             \
+  }
+#define TAKE(name, expression)                                                                     \
+  static char *name (const TfExportRow *r)                                                         \
+  {                                                                                                \
+    return expression;                                                                             \
+  }
+#define NUMBER(name, expression)                                                                   \
+  static double name (const TfExportRow *r)                                                        \
+  {                                                                                                \
+    return expression;                                                                             \
+  }
+#define M (r->row->measure)
+
+TEXT (get_region, r->row->region)
+TEXT (get_passage, r->row->passage)
+TEXT (get_mark, r->row->mark_id)
+TEXT (get_origin, r->row->origin)
+TEXT (get_label, r->row->label)
+TAKE (get_frame, r->row->frame_path != NULL ? g_path_get_basename (r->row->frame_path) : g_strdup (""))
+TEXT (get_frame_checksum, r->row->frame_checksum)
+TEXT (get_method, r->row->method)
+TEXT (get_program_version, r->row->program_version)
+TEXT (get_field_used, tf_field_used_name (M.field_used))
+TEXT (get_size, M.ephemeral ? "ephemeral" : "region")
+TAKE (get_time, tf_time_is_known (M.time) ? tf_time_dup_iso (M.time, 3) : g_strdup (""))
+TEXT (get_time_source, r->row->time_source)
+TEXT (get_kind, r->row->kind)
+TEXT (get_instrument, r->row->instrument)
+NUMBER (get_scale, M.scale)
+TEXT (get_person, r->row->person)
+TEXT (get_vantage, r->row->vantage)
+NUMBER (get_leading_lat, pole_lat (r, TRUE))
+NUMBER (get_leading_lon, pole_lon (r, TRUE))
+NUMBER (get_following_lat, pole_lat (r, FALSE))
+NUMBER (get_following_lon, pole_lon (r, FALSE))
+NUMBER (get_lat, M.lat_deg)
+NUMBER (get_cmd, M.cmd_deg)
+NUMBER (get_stonyhurst, M.stonyhurst_lon_deg)
+NUMBER (get_carrington, M.carrington_lon_deg)
+NUMBER (get_mu, M.mu)
+NUMBER (get_bearing, M.axis_bearing_deg)
+NUMBER (get_tilt, M.axis_tilt_deg)
+NUMBER (get_polarity_tilt, tf_verdict_polarity_tilt (&r->sample, &r->verdict))
+NUMBER (get_tilt_sigma, M.tilt_terms.total)
+NUMBER (get_separation, M.separation_deg)
+NUMBER (get_separation_sigma, M.separation_sigma_deg)
+NUMBER (get_separation_mm, M.separation_mm)
+NUMBER (get_compactness, M.compactness)
+NUMBER (get_pieces, M.pieces)
+NUMBER (get_leading_polarity, M.leading_polarity)
+NUMBER (get_leading_sure, int_or_nan (M.leading_polarity != 0, M.leading_sure != 0))
+NUMBER (get_flux, M.flux_unsigned_mx)
+NUMBER (get_flux_positive, M.positive.flux_mx)
+NUMBER (get_flux_negative, M.negative.flux_mx)
+NUMBER (get_imbalance, M.imbalance)
+NUMBER (get_magnetic_area, M.positive.magnetic_area_msh + M.negative.magnetic_area_msh)
+NUMBER (get_cycle, int_or_nan (r->verdict.cycle.number != 0, r->verdict.cycle.number))
+NUMBER (get_cycle_sure, int_or_nan (r->verdict.cycle.number != 0, r->verdict.cycle.sure != 0))
+TEXT (get_hale, tf_verdict_name (r->verdict.kind))
+TEXT (get_hale_reason, r->verdict.reason)
+TEXT (get_class, r->row->mw_class)
+NUMBER (get_axial_dipole, M.axial_dipole_gauss)
+NUMBER (get_floor, M.floor_gauss)
+TEXT (get_floor_kind, tf_floor_kind_name (M.floor_kind))
+TAKE (get_cautions, tf_notes_dup_codes (M.cautions))
+TAKE (get_class_base, tf_mount_wilson_dup_base (r->row->mw_class))
+NUMBER (get_class_delta,
+        int_or_nan (tf_mount_wilson_delta (r->row->mw_class) >= 0, tf_mount_wilson_delta (r->row->mw_class)))
+NUMBER (get_unipolar, int_or_nan (r->row->is_hint, r->row->unipolar != 0))
+NUMBER (get_simulated, r->row->simulated != 0)
+
+/* -- the table ---------------------------------------------------------------------------------- */
+
+#define DEG "deg", "deg"
+#define MX "10**-8 Wb", "1e-8Wb"
+#define MSH "10**-6", "1e-6"
+#define MEGAMETRE "Mm", "Mm"
+#define GAUSS "10**-4 T", "1e-4T"
+#define NONE "", ""
+#define AS_TEXT(name, ucd, description, text) { name, TF_COLUMN_TEXT, NONE, ucd, description, 1.0, NULL, text }
+#define AS_NUMBER(name, units, ucd, description, number) { name, TF_COLUMN_NUMBER, units, ucd, description, 1.0, number, NULL }
+#define AS_INT(name, ucd, description, number) { name, TF_COLUMN_INT, NONE, ucd, description, 1.0, number, NULL }
+#define AS_BOOL(name, ucd, description, number) { name, TF_COLUMN_BOOL, NONE, ucd, description, 1.0, number, NULL }
+
+const TfColumn tf_columns[] = {
+  AS_TEXT ("region", "meta.id;src", "own number of the region", get_region),
+  AS_TEXT ("passage", "meta.id.parent", "disk passage that the mark belongs to", get_passage),
+  AS_TEXT ("mark", "meta.id;meta.main", "id of the mark or hint, the same in every ledger", get_mark),
+  AS_TEXT ("origin", "meta.code.status", "hint, kept as hinted, changed, drawn new, outside", get_origin),
+  AS_TEXT ("label", "meta.id.assoc", "a person's name or official number of the region", get_label),
+  AS_TEXT ("frame", "meta.id;meta.file", "name of the frame's file", get_frame),
+  AS_TEXT ("frame_checksum", "meta.ref;meta.file", "SHA-256 of the frame's file", get_frame_checksum),
+  AS_TEXT ("method", "meta.note;meta.software", "how it was measured, with every option", get_method),
+  AS_TEXT ("program_version", "meta.version;meta.software", "version that measured it", get_program_version),
+  AS_TEXT ("field_used", "meta.code", "radial (B/mu), as observed, or potential", get_field_used),
+  AS_TEXT ("size", "meta.code.class", "region, or ephemeral by its flux", get_size),
+  AS_TEXT ("time", "time.epoch;obs", "middle of the exposure, UTC", get_time),
+  AS_TEXT ("time_source", "meta.code", "keyword that the time was read from", get_time_source),
+  AS_TEXT ("kind", "meta.code.class;obs.image", "kind of the frame: disk, cut-out, map, model map", get_kind),
+  AS_TEXT ("instrument", "meta.id;instr", "origin of the frame", get_instrument),
+  AS_NUMBER ("scale", NONE, "instr.calib", "factor applied to the instrument's field; missing: not scaled", get_scale),
+  AS_TEXT ("person", "obs.observer", "who marked it", get_person),
+  AS_TEXT ("vantage", "meta.id;instr.obsty", "where it was seen from: earth, or the Stonyhurst longitude", get_vantage),
+  AS_NUMBER ("leading_lat_deg", DEG, "pos.bodyrc.lat", "latitude of the leading pole", get_leading_lat),
+  AS_NUMBER ("leading_carrington_lon_deg", DEG, "pos.bodyrc.long", "Carrington longitude of the leading pole", get_leading_lon),
+  AS_NUMBER ("following_lat_deg", DEG, "pos.bodyrc.lat", "latitude of the following pole", get_following_lat),
+  AS_NUMBER ("following_carrington_lon_deg", DEG, "pos.bodyrc.long", "Carrington longitude of the following pole",
+             get_following_lon),
+  AS_NUMBER ("lat_deg", DEG, "pos.bodyrc.lat;meta.main", "latitude of the poles' midpoint", get_lat),
+  AS_NUMBER ("cmd_deg", DEG, "pos.bodyrc.long", "longitude from the observer's central meridian, west positive", get_cmd),
+  AS_NUMBER ("stonyhurst_lon_deg", DEG, "pos.bodyrc.long", "Stonyhurst longitude, west positive", get_stonyhurst),
+  AS_NUMBER ("carrington_lon_deg", DEG, "pos.bodyrc.long;meta.main", "Carrington longitude, 0 to 360", get_carrington),
+  AS_NUMBER ("mu", NONE, "obs.param", "cosine of the angle between vertical and line of sight", get_mu),
+  AS_NUMBER ("axis_bearing_deg", DEG, "pos.posAng", "from following to leading pole, from west towards north", get_bearing),
+  AS_NUMBER ("axis_tilt_deg", DEG, "pos.posAng;meta.main", "tilt, positive: the leader equatorward", get_tilt),
+  AS_NUMBER ("polarity_tilt_deg", DEG, "pos.posAng", "tilt from the pole that should follow to the one that should lead",
+             get_polarity_tilt),
+  AS_NUMBER ("tilt_sigma_deg", DEG, "stat.error;pos.posAng", "uncertainty of the tilt: noise, outline and floor", get_tilt_sigma),
+  AS_NUMBER ("separation_deg", DEG, "pos.angDistance", "great-circle distance of the poles", get_separation),
+  AS_NUMBER ("separation_sigma_deg", DEG, "stat.error;pos.angDistance", "uncertainty of the separation", get_separation_sigma),
+  AS_NUMBER ("separation_mm", MEGAMETRE, "phys.size", "distance of the poles on the Sun", get_separation_mm),
+  AS_NUMBER ("compactness", NONE, "phys.size.axisRatio", "separation over the sum of the poles' radii", get_compactness),
+  AS_INT ("pieces", "meta.number", "single-polarity pieces of at least 15 % of the flux", get_pieces),
+  AS_INT ("leading_polarity", "meta.code", "1 positive, -1 negative, 0 without two poles", get_leading_polarity),
+  AS_BOOL ("leading_sure", "meta.code.qual", "whether the leading polarity is sure", get_leading_sure),
+  AS_NUMBER ("flux_unsigned_mx", MX, "phys.magField;phys.area", "unsigned flux, Mx", get_flux),
+  AS_NUMBER ("flux_positive_mx", MX, "phys.magField;phys.area", "positive flux, Mx", get_flux_positive),
+  AS_NUMBER ("flux_negative_mx", MX, "phys.magField;phys.area", "size of the negative flux, Mx", get_flux_negative),
+  AS_NUMBER ("imbalance", NONE, "phys.magField;arith.ratio", "positive less negative over unsigned flux", get_imbalance),
+  AS_NUMBER ("magnetic_area_msh", MSH, "phys.area", "area above the floor, millionths of the hemisphere",
+             get_magnetic_area),
+  AS_INT ("cycle", "meta.number", "sunspot cycle, by the study's divides", get_cycle),
+  AS_BOOL ("cycle_sure", "meta.code.qual", "whether the cycle is sure", get_cycle_sure),
+  AS_TEXT ("hale", "meta.code.class", "Hale's law: keeps, breaks, cannot say", get_hale),
+  AS_TEXT ("hale_reason", "meta.code", "why it cannot be said", get_hale_reason),
+  AS_TEXT ("class", "src.class", "Mount Wilson class", get_class),
+  AS_NUMBER ("axial_dipole_gauss", GAUSS, "phys.magField", "contribution to the axial dipole, G", get_axial_dipole),
+  AS_NUMBER ("floor_gauss", GAUSS, "phys.magField;stat.min", "floor of the field that counts, G", get_floor),
+  AS_TEXT ("floor_kind", "meta.code", "local (as observed) or even (radial)", get_floor_kind),
+  AS_TEXT ("cautions", "meta.code.qual", "codes of what to beware of", get_cautions),
+  AS_TEXT ("class_base", "src.class", "Mount Wilson class without delta", get_class_base),
+  AS_BOOL ("class_delta", "meta.code", "whether the Mount Wilson class has delta", get_class_delta),
+  AS_BOOL ("unipolar", "meta.code", "hints: offered as unipolar", get_unipolar),
+  AS_BOOL ("simulated", "meta.code", "the frame is simulated", get_simulated),
+  { NULL },
+};
