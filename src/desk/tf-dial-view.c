@@ -17,7 +17,7 @@ struct _TfDialView
 G_DEFINE_FINAL_TYPE (TfDialView, tf_dial_view, GTK_TYPE_WIDGET)
 
 static const double label_share = 0.8;
-enum { HEIGHT = 152, SIGN_SIZE = 22 };
+enum { HEIGHT = 128, SIGN_SIZE = 22 };
 
 static void
 snapshot (GtkWidget *widget, GtkSnapshot *snapshot)

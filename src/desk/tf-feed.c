@@ -44,7 +44,7 @@ count (TfFeedState *state, const TfIntakeReport *report)
   state->there += report->outcome == TF_INTAKE_THERE;
   state->refused += report->outcome == TF_INTAKE_REFUSED;
   state->failed += report->outcome == TF_INTAKE_FAILED;
-  if (report->message != NULL)
+  if (report->message != NULL && report->outcome == TF_INTAKE_FAILED)
     g_ptr_array_add (state->messages, g_strdup (report->message));
 }
 

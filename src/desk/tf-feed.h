@@ -21,7 +21,7 @@ typedef struct
   guint done, total, added, there, refused, failed, hints;
   gboolean listing;  /* still looking for files */
   gboolean finished, cancelled;
-  GPtrArray *messages; /* char *: one a file that was refused or failed */
+  GPtrArray *messages; /* char *: one a file that could not be read */
   char *error;         /* nothing could be done */
 } TfFeedState;
 

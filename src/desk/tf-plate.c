@@ -18,7 +18,7 @@ static const GdkRGBA ground = { 0.0902f, 0.098f, 0.1137f, 1 };
 /* -- words ---------------------------------------------------------------------------------------------- */
 
 static void
-append_field (GString *text, const TfFrame *frame, double gauss)
+append_field (GString *text, double gauss)
 {
   if (!isfinite (gauss))
     {
@@ -27,8 +27,7 @@ append_field (GString *text, const TfFrame *frame, double gauss)
     }
   g_autofree char *number = tf_number_dup_form (gauss, "+.0f", TRUE);
   const char *minus = number[0] == '-' ? "−" : "+";
-  gboolean radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL;
-  g_string_append_printf (text, " · %s%s G %s", minus, number + 1, radial ? _ ("radial") : _ ("line of sight"));
+  g_string_append_printf (text, " · %s%s G", minus, number + 1);
 }
 
 static char *
@@ -46,13 +45,13 @@ dup_readout (TfPlate *self)
   GString *text = g_string_new (NULL);
   g_string_append_printf (text, "%s%.1f", place.lat_deg < 0 ? _ ("S") : _ ("N"), fabs (place.lat_deg));
   if (isfinite (place.cmd_deg))
-    g_string_append_printf (text, _ (" · CMD %s%.1f · Stonyhurst %.1f°"), place.cmd_deg < 0 ? _ ("E") : _ ("W"),
+    g_string_append_printf (text, _ (" · CMD %s%.1f · Stonyhurst %+.1f°"), place.cmd_deg < 0 ? _ ("E") : _ ("W"),
                             fabs (place.cmd_deg), place.stonyhurst_lon_deg);
   g_string_append_printf (text, _ (" · Carrington %.1f°"), place.carrington_lon_deg);
   if (isfinite (place.mu))
     g_string_append_printf (text, " · μ %.2f", place.mu);
   if (tf_view_to_pixel (view, geometry, self->pointer_x, self->pointer_y, &x, &y))
-    append_field (text, frame, tf_frame_value (frame, x, y));
+    append_field (text, tf_frame_value (frame, x, y));
   return g_string_free (text, FALSE);
 }
 

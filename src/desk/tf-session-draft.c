@@ -174,8 +174,8 @@ void
 tf_session_measure_line (TfSession *self)
 {
   g_return_if_fail (TF_IS_SESSION (self));
-  if (self->frame == NULL)
-    return;
+  if (self->frame == NULL || (self->line->len == 0 && self->draft != NULL))
+    return; /* the line was finished meanwhile */
   TfTime time = tf_frame_get_info (self->frame)->time;
   g_autoptr (GError) error = NULL;
   g_autoptr (TfOutline) outline = NULL;

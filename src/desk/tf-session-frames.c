@@ -318,7 +318,11 @@ looked_at (GObject *source, GAsyncResult *result, gpointer data)
   g_autoptr (GError) error = NULL;
   GPtrArray *rows = g_task_propagate_pointer (G_TASK (result), &error);
   if (rows == NULL)
-    tf_session_say (self, error->message);
+    {
+      g_free (self->feed_trouble);
+      self->feed_trouble = g_strdup (error->message);
+      tf_session_emit (self, TF_SIGNAL_STATUS);
+    }
   else if (self->path != NULL)
     g_ptr_array_unref (rows); /* a ledger was opened meanwhile */
   else
@@ -348,29 +352,53 @@ look_at (TfSession *self, char *const *paths)
 
 /* -- frames into the ledger -------------------------------------------------------------------- */
 
+/* What could not be read stays to be read: one sentence a file. Those refused stand in the roll. */
+static void
+keep_trouble (TfSession *self, const TfFeedState *state)
+{
+  g_clear_pointer (&self->feed_trouble, g_free);
+  if (state->error != NULL)
+    self->feed_trouble = g_strdup (state->error);
+  else if (state->messages->len > 0)
+    {
+      g_ptr_array_add (state->messages, NULL);
+      self->feed_trouble = g_strjoinv ("\n", (char **)state->messages->pdata);
+      g_ptr_array_remove_index (state->messages, state->messages->len - 1);
+    }
+}
+
 static void
 say_fed (TfSession *self, const TfFeedState *state)
 {
+  keep_trouble (self, state);
   if (state->error != NULL)
-    {
-      tf_session_say (self, state->error);
-      return;
-    }
+    return;
   GString *text = g_string_new (NULL);
   g_string_append_printf (text, ngettext ("%u frame added", "%u frames added", state->added), state->added);
   if (state->there > 0)
     g_string_append_printf (text, _ (", %u there already"), state->there);
   if (state->refused > 0)
-    g_string_append_printf (text, _ (", %u refused (the roll says why)"), state->refused);
+    g_string_append_printf (text, _ (", %u refused"), state->refused);
   if (state->failed > 0)
     g_string_append_printf (text, _ (", %u could not be read"), state->failed);
   if (state->cancelled)
     g_string_append (text, _ (", then cancelled"));
   tf_session_say (self, text->str);
   g_string_free (text, TRUE);
-  /* one sentence a file that could not be read; those refused stand in the roll */
-  if (state->failed > 0 && state->messages->len > 0)
-    tf_session_say (self, g_ptr_array_index (state->messages, state->messages->len - 1));
+}
+
+const char *
+tf_session_get_feed_trouble (TfSession *self)
+{
+  return self->feed_trouble;
+}
+
+void
+tf_session_forget_feed_trouble (TfSession *self)
+{
+  g_return_if_fail (TF_IS_SESSION (self));
+  g_clear_pointer (&self->feed_trouble, g_free);
+  tf_session_emit (self, TF_SIGNAL_STATUS);
 }
 
 static void

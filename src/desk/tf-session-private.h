@@ -62,6 +62,7 @@ struct _TfSession
   TfFeed *feed;
   char *progress; /* words of the feed */
   double progress_share;
+  char *feed_trouble; /* files that could not be taken in, one sentence a line */
 
   TfView view;
   gboolean fitted, north_up;

@@ -64,6 +64,7 @@ finalize (GObject *object)
   g_free (self->person);
   g_free (self->method);
   g_free (self->progress);
+  g_free (self->feed_trouble);
   g_free (self->draft_text);
   tf_judge_unref (self->judge);
   tf_workers_unref (self->workers);

@@ -75,6 +75,9 @@ gboolean tf_session_is_loading (TfSession *session);
 /** tf_session_get_progress: (nullable): words of the long work under way; @share 0-1 or negative when unknown */
 const char *tf_session_get_progress (TfSession *session, double *share);
 void tf_session_cancel (TfSession *session);
+/** tf_session_get_feed_trouble: (nullable): what could not be taken in, one sentence a line */
+const char *tf_session_get_feed_trouble (TfSession *session);
+void tf_session_forget_feed_trouble (TfSession *session);
 /** tf_session_get_newest: time of the newest frame and the usual step between frames, s; unknown and NaN */
 TfTime tf_session_get_newest (TfSession *session, double *cadence_s);
 

@@ -4,6 +4,7 @@
 #include "tf-slip-words.h"
 
 #include <math.h>
+#include <string.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-chart.h"
@@ -51,19 +52,24 @@ tf_words_dup_longitude (const TfMeasure *m)
   return g_strdup_printf (_ ("Stonyhurst %s°"), lon);
 }
 
-const char *
-tf_words_verdict_name (TfVerdictKind kind)
+void
+tf_words_split_verdict (const char *sentence, char **said, char **why)
 {
-  switch (kind)
+  const char *bracket = strstr (sentence, " ("), *colon = strstr (sentence, ": ");
+  gsize n = strlen (sentence);
+  *why = NULL;
+  if (bracket != NULL && (colon == NULL || bracket < colon) && sentence[n - 1] == ')')
     {
-    case TF_VERDICT_KEEPS:
-      return _ ("keeps Hale’s law");
-    case TF_VERDICT_BREAKS:
-      return _ ("breaks Hale’s law");
-    case TF_VERDICT_CANNOT_SAY:
-    default:
-      return _ ("cannot say");
+      *said = g_strndup (sentence, (gsize)(bracket - sentence));
+      *why = g_strndup (bracket + 2, n - (gsize)(bracket - sentence) - 3);
     }
+  else if (colon != NULL)
+    {
+      *said = g_strndup (sentence, (gsize)(colon - sentence));
+      *why = g_strdup (colon + 2);
+    }
+  else
+    *said = g_strdup (sentence);
 }
 
 char *
@@ -85,7 +91,7 @@ const char *
 tf_line_name (TfLine line)
 {
   static const char *const names[TF_N_LINES]
-      = { N_ ("leader"), N_ ("axis tilt"), N_ ("leading"), N_ ("following"), N_ ("separation"), N_ ("shape"), N_ ("floor") };
+      = { N_ ("axis tilt"), N_ ("leading"), N_ ("following"), N_ ("separation"), N_ ("shape"), N_ ("floor") };
   return _ (names[line]);
 }
 
@@ -114,14 +120,6 @@ dup_flux_bare (double mx)
 }
 
 /* -- values ------------------------------------------------------------------------------------------ */
-
-static char *
-value_leader (const TfMeasure *m)
-{
-  if (m->leading_polarity == 0)
-    return g_strdup (_ ("no two poles"));
-  return g_strdup_printf (m->leading_sure ? _ ("%s leads, sure") : _ ("%s leads, unsure"), sign_of (m->leading_polarity));
-}
 
 static char *
 value_tilt (const TfMeasure *m)
@@ -171,8 +169,6 @@ tf_line_dup_value (TfLine line, const TfReading *r)
 {
   switch (line)
     {
-    case TF_LINE_LEADER:
-      return value_leader (r->measure);
     case TF_LINE_TILT:
       return value_tilt (r->measure);
     case TF_LINE_LEADING:
@@ -193,13 +189,12 @@ tf_line_dup_value (TfLine line, const TfReading *r)
 
 /* -- what stands under them ------------------------------------------------------------------------------ */
 
-static char *
-under_leader (const TfMeasure *m)
+static void
+append_witnesses (GString *text, const TfMeasure *m)
 {
-  GString *text = g_string_new (_ ("witnesses"));
+  g_string_append (text, m->leading_sure ? _ ("\nleads, sure: witnesses") : _ ("\nleads, unsure: witnesses"));
   for (guint k = 0; k < G_N_ELEMENTS (m->witnesses); k++)
     g_string_append_printf (text, " %s", m->witnesses[k] == TF_WITNESS_ABSENT ? "–" : sign_of (m->witnesses[k]));
-  return g_string_free (text, FALSE);
 }
 
 static char *
@@ -217,7 +212,7 @@ under_tilt (const TfReading *r)
       g_autofree char *e = tf_words_dup_signed (expected, 0), *s = tf_words_dup_number (scatter, 0);
       g_string_append_printf (text, _ ("expected %s° ± %s° (Joy)\n"), e, s);
     }
-  g_string_append_printf (text, _ ("noise %s° · outline %s° · floor %s°"), noise, outline, floor);
+  g_string_append_printf (text, _ ("noise %s · outline %s · floor %s"), noise, outline, floor);
   return g_string_free (text, FALSE);
 }
 
@@ -228,7 +223,11 @@ under_flux (const TfMeasure *m, gboolean leading)
   if (!(m->flux_unsigned_mx > 0))
     return NULL;
   g_autofree char *sigma = dup_flux_bare (pole->flux_sigma_mx);
-  return g_strdup_printf (_ ("± %s · %.0f %% of the flux"), sigma, 100 * pole->flux_mx / m->flux_unsigned_mx);
+  GString *text = g_string_new (NULL);
+  g_string_append_printf (text, _ ("± %s · %.0f %% of the flux"), sigma, 100 * pole->flux_mx / m->flux_unsigned_mx);
+  if (leading && m->leading_polarity != 0)
+    append_witnesses (text, m);
+  return g_string_free (text, FALSE);
 }
 
 static char *
@@ -262,8 +261,6 @@ tf_line_dup_under (TfLine line, const TfReading *r)
 {
   switch (line)
     {
-    case TF_LINE_LEADER:
-      return under_leader (r->measure);
     case TF_LINE_TILT:
       return under_tilt (r);
     case TF_LINE_LEADING:
@@ -285,15 +282,14 @@ tf_line_dup_under (TfLine line, const TfReading *r)
 /* -- how they were got ---------------------------------------------------------------------------------------- */
 
 static const char *const how_texts[TF_N_LINES] = {
-  [TF_LINE_LEADER] = N_ ("The leading polarity is the one whose pole lies further west. Three witnesses tell it apart from each other: the "
-                         "flux centroids; the centroids of the field above three times the floor; the western of the two strongest "
-                         "single-polarity pieces. It is sure when all agree and the poles are further apart in longitude than twice "
-                         "the uncertainty."),
   [TF_LINE_TILT] = N_ ("Angle of the axis from the following to the leading pole against the parallel, planar with the cosine of the mean "
                        "latitude; positive means the leader is nearer to the equator, in both hemispheres. Its uncertainty: noise "
                        "(every pixel that may cross the floor counted), outline (16 fixed deformations of it), floor (20 % up and down), in quadrature."),
   [TF_LINE_LEADING] = N_ ("Sum of field times area over the pixels of that polarity above the floor, inside the outline. The uncertainty holds "
-                          "noise, outline and floor."),
+                          "noise, outline and floor.\n\nThe leading polarity is the one whose pole lies further west. Three witnesses tell it "
+                          "apart from each other: the flux centroids; the centroids of the field above three times the floor; the "
+                          "western of the two strongest single-polarity pieces. It is sure when all agree and the poles are further "
+                          "apart in longitude than twice the uncertainty."),
   [TF_LINE_FOLLOWING] = N_ ("Sum of field times area over the pixels of that polarity above the floor, inside the outline. The uncertainty "
                             "holds noise, outline and floor."),
   [TF_LINE_SEPARATION] = N_ ("Great-circle distance between the flux-weighted centroids of the two polarities, as unit vectors on the Sun; "

@@ -12,9 +12,8 @@ G_BEGIN_DECLS
 
 typedef enum
 {
-  TF_LINE_LEADER, /* which polarity leads, with its witnesses */
   TF_LINE_TILT,
-  TF_LINE_LEADING,
+  TF_LINE_LEADING, /* with the witnesses of which polarity leads */
   TF_LINE_FOLLOWING,
   TF_LINE_SEPARATION,
   TF_LINE_SHAPE, /* imbalance, compactness, pieces */
@@ -45,8 +44,8 @@ char *tf_words_dup_number (double value, guint decimals);
 char *tf_words_dup_place (const TfMeasure *measure);
 /** tf_words_dup_longitude: "Stonyhurst 21.4°" where it differs from CMD by more than 0.5 deg, else NULL */
 char *tf_words_dup_longitude (const TfMeasure *measure);
-/** tf_words_verdict_name: "breaks Hale's law" */
-const char *tf_words_verdict_name (TfVerdictKind kind);
+/** tf_words_split_verdict: the sentence parted into what is said and why: "breaks Hale's law" and "cycle 24, sure: ..." */
+void tf_words_split_verdict (const char *sentence, char **said, char **why);
 /** tf_words_dup_age: "2 h", "3 d", "12 y" */
 char *tf_words_dup_age (double seconds);
 

@@ -22,7 +22,7 @@ struct _TfSlip
   TfVerdictSign *sign;
   GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box;
   GtkCheckButton *replaces;
-  GtkBox *rows;
+  GtkBox *rows, *more_rows;
   TfSlipRow *row[TF_N_LINES];
   GtkToggleButton *class_alpha, *class_beta, *class_beta_gamma, *class_gamma, *class_delta;
   GtkTextView *note;
@@ -128,8 +128,10 @@ show_verdict (TfSlip *self, const TfVerdict *verdict)
                                      [TF_VERDICT_BREAKS] = TF_DIAMOND_STRUCK };
   g_autofree char *sentence = tf_verdict_dup_text (verdict, tf_session_get_sample (self->session), FALSE);
   tf_verdict_sign_set (self->sign, signs[verdict->kind]);
-  set_label (self->verdict, tf_words_verdict_name (verdict->kind));
-  set_label (self->verdict_why, sentence);
+  g_autofree char *said = NULL, *why = NULL;
+  tf_words_split_verdict (sentence, &said, &why);
+  set_label (self->verdict, said);
+  set_label (self->verdict_why, why);
   gtk_widget_remove_css_class (GTK_WIDGET (self->verdict), "breaks");
   if (verdict->kind == TF_VERDICT_BREAKS)
     gtk_widget_add_css_class (GTK_WIDGET (self->verdict), "breaks");
@@ -243,6 +245,9 @@ choice_changed (TfSlip *self)
   gtk_stack_set_visible_child_name (self->stack, "region");
   show_head (self, drawing, region, m);
   gtk_widget_set_visible (self->numbers, m != NULL);
+  gtk_widget_set_visible (GTK_WIDGET (self->more_rows), m != NULL);
+  if (m == NULL)
+    set_label (self->cautions, NULL);
   set_label (self->problem, m == NULL ? tf_session_get_measure_problem (self->session) : NULL);
   if (m != NULL)
     show_numbers (self, m, method);
@@ -322,6 +327,7 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfSlip, verdict);
   gtk_widget_class_bind_template_child (widget, TfSlip, verdict_why);
   gtk_widget_class_bind_template_child (widget, TfSlip, rows);
+  gtk_widget_class_bind_template_child (widget, TfSlip, more_rows);
   gtk_widget_class_bind_template_child (widget, TfSlip, cautions);
   gtk_widget_class_bind_template_child (widget, TfSlip, judged);
   gtk_widget_class_bind_template_child (widget, TfSlip, class_box);
@@ -358,6 +364,6 @@ tf_slip_init (TfSlip *self)
   for (guint k = 0; k < TF_N_LINES; k++)
     {
       self->row[k] = g_object_new (TF_TYPE_SLIP_ROW, NULL);
-      gtk_box_append (self->rows, GTK_WIDGET (self->row[k]));
+      gtk_box_append (k < TF_LINE_SHAPE ? self->rows : self->more_rows, GTK_WIDGET (self->row[k]));
     }
 }

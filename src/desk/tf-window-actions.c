@@ -85,6 +85,7 @@ ACTION (redo) { tf_session_redo (session_of (window)); }
 ACTION (set_class) { tf_session_set_class (session_of (window), g_variant_get_string (value, NULL)); }
 ACTION (set_note) { tf_session_set_note (session_of (window), g_variant_get_string (value, NULL)); }
 ACTION (retry) { tf_session_retry (session_of (window)); }
+ACTION (forget_trouble) { tf_session_forget_feed_trouble (session_of (window)); }
 ACTION (give_up) { tf_session_give_up (session_of (window)); }
 
 /* -- drawing */
@@ -176,6 +177,7 @@ static const GActionEntry entries[] = {
   { "class", set_class, "s", NULL, NULL },
   { "note", set_note, "s", NULL, NULL },
   { "retry", retry, NULL, NULL, NULL },
+  { "forget-trouble", forget_trouble, NULL, NULL, NULL },
   { "give-up", give_up, NULL, NULL, NULL },
   { "draw", draw, NULL, "false", NULL },
   { "polygon", polygon, NULL, "false", NULL },

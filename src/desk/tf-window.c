@@ -21,9 +21,9 @@ struct _TfWindow
   AdwToastOverlay *toasts;
   GtkStack *stack;
   GtkMenuButton *ledger_button;
-  GtkLabel *ledger_name, *age, *problem, *ledger_problem, *wings_words;
+  GtkLabel *ledger_name, *age, *problem, *ledger_problem, *feed_trouble, *wings_words;
   GtkButton *person_button;
-  GtkRevealer *problem_bar, *ledger_bar, *loose_bar;
+  GtkRevealer *problem_bar, *ledger_bar, *feed_bar, *loose_bar;
   GtkWidget *wings_offer;
   TfRoll *roll;
   TfPlatePane *plate_pane;
@@ -148,6 +148,9 @@ status_changed (TfWindow *self)
                             problem, pending - 1);
   gtk_label_set_label (self->problem, text != NULL ? text : problem != NULL ? problem : "");
   gtk_revealer_set_reveal_child (self->problem_bar, problem != NULL);
+  const char *trouble = tf_session_get_feed_trouble (self->session);
+  gtk_label_set_label (self->feed_trouble, trouble != NULL ? trouble : "");
+  gtk_revealer_set_reveal_child (self->feed_bar, trouble != NULL);
   show_page (self);
   tf_window_update_actions (self);
 }
@@ -283,6 +286,8 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfWindow, problem);
   gtk_widget_class_bind_template_child (widget, TfWindow, ledger_bar);
   gtk_widget_class_bind_template_child (widget, TfWindow, ledger_problem);
+  gtk_widget_class_bind_template_child (widget, TfWindow, feed_bar);
+  gtk_widget_class_bind_template_child (widget, TfWindow, feed_trouble);
   gtk_widget_class_bind_template_child (widget, TfWindow, loose_bar);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_offer);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_words);
