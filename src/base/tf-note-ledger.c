@@ -29,6 +29,8 @@ const TfNoteKind tf_note_kinds_ledger[] = {
   { "frame-missing", TF_NOTE_CAUTION,
     N_ ("{0}: the frame {1} is not at that place as it was when it was filled in; its rows were not measured anew. Put it back, or "
         "fill it from where it is now") },
+  { "gather-acts-left", TF_NOTE_CAUTION,
+    N_ ("{0} also holds {1} acts of people; gathering does not take them. Send them in a parcel") },
   { "ledger-copied", TF_NOTE_INFO,
     N_ ("{0} is a copy of a ledger that is still in its place; what is done here is recorded as a line of its own") },
   { "ledger-from-elsewhere", TF_NOTE_INFO,

@@ -100,6 +100,9 @@ write_act (TfLedger *ledger, TfAct *act, gint64 wall, const char *body, GError *
 gboolean
 tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuilder *body, GError **error)
 {
+  /* Another handle on this file may have begun one for us since we opened it. */
+  if (ledger->replica == 0 && !tf_replica_choose (ledger, error))
+    return FALSE;
   if (ledger->replica == 0 && !tf_replica_begin (ledger, error))
     return FALSE;
   g_autoptr (JsonNode) root = json_builder_get_root (body);

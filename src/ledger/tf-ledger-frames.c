@@ -50,25 +50,24 @@ insert_frame (TfLedger *ledger, const char *cid, const char *path, const char *c
                  (gint64)info->simulated, noise_gauss, refusal, text, path);
 }
 
-static gboolean
-put_place (TfLedger *ledger, gint64 frame, const char *path, const char *checksum, GError **error)
+/* What else was seen at that path is no longer there. */
+gboolean
+tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime, GError **error)
 {
-  gint64 size, mtime;
-  if (!stat_file (path, &size, &mtime))
-    return TRUE;
   return tf_run (ledger, error, "UPDATE frame SET path = ?2 WHERE id = ?1 AND path <> ?2", "it", frame, path)
          && tf_run (ledger, error,
-                    "DELETE FROM place WHERE path = ?1 AND frame IN (SELECT id FROM frame WHERE checksum <> ?2)", "tt", path,
-                    checksum)
+                    "DELETE FROM place WHERE path = ?1 AND frame IN"
+                    " (SELECT id FROM frame WHERE checksum <> (SELECT checksum FROM frame WHERE id = ?2))",
+                    "ti", path, frame)
          && tf_run (ledger, error,
                     "INSERT INTO place (path, frame, size, mtime) VALUES (?1, ?2, ?3, ?4)"
                     " ON CONFLICT (path, frame) DO UPDATE SET size = ?3, mtime = ?4",
                     "tiii", path, frame, size, mtime);
 }
 
-static gint64
-add_frame (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane, const TfFrameInfo *info,
-           double noise_gauss, GError **error)
+gint64
+tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane, const TfFrameInfo *info,
+              double noise_gauss, GError **error)
 {
   g_autofree char *cid = frame_cid (checksum, hdu, plane);
   gint64 id = tf_value (ledger, NULL, 0, "SELECT id FROM frame WHERE cid = ?1", "h", cid);
@@ -80,7 +79,7 @@ add_frame (TfLedger *ledger, const char *path, const char *checksum, int hdu, in
       if (!tf_digest_store (ledger, "frame", id, error))
         return 0;
     }
-  return put_place (ledger, id, path, checksum, error) ? id : 0;
+  return id;
 }
 
 gint64
@@ -91,8 +90,8 @@ tf_ledger_add_frame (TfLedger *ledger, const char *path, const char *checksum, i
   g_autofree char *full = g_canonicalize_filename (path, NULL);
   if (!tf_ledger_begin (ledger, error))
     return 0;
-  gint64 id = add_frame (ledger, full, checksum, hdu, plane, info, noise_gauss, error);
-  if (id == 0)
+  gint64 size, mtime, id = tf_frame_put (ledger, full, checksum, hdu, plane, info, noise_gauss, error);
+  if (id == 0 || (stat_file (full, &size, &mtime) && !tf_place_put (ledger, id, full, size, mtime, error)))
     {
       tf_ledger_rollback (ledger);
       return 0;

@@ -10,7 +10,7 @@
 
 static gint64
 put_hint (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *rule, gint64 rule_key, guint ordinal,
-          const TfHint *hint, const char *method, GError **error)
+          const TfHint *hint, const char *method, const char *program, GError **error)
 {
   g_autofree char *number = g_strdup_printf ("%u", ordinal);
   g_autofree char *cid = tf_content_id ("tiltfield hint 1", frame_cid, rule, number, NULL);
@@ -19,7 +19,7 @@ put_hint (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *rul
     return key;
   g_autofree char *outline = tf_outline_dup_text (hint->outline);
   g_autofree char *notes = tf_notes_dup_store (hint->cautions);
-  gint64 measure = tf_measure_put (ledger, frame, frame_cid, method, outline, &hint->measure, NULL, error);
+  gint64 measure = tf_measure_put (ledger, frame, frame_cid, method, outline, &hint->measure, program, NULL, error);
   if (measure == 0
       || !tf_run (ledger, error,
                   "INSERT INTO hint (cid, frame, rule, ordinal, unipolar, outline, measure, notes)"
@@ -30,8 +30,9 @@ put_hint (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *rul
   return tf_digest_store (ledger, "hint", key, error) ? key : 0;
 }
 
-static gboolean
-add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints, const char *method, GError **error)
+gboolean
+tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints, const char *method,
+              const char *program, GError **error)
 {
   gint64 rule_key = tf_method_key (ledger, rule, error);
   gint64 method_key = rule_key != 0 ? tf_method_key (ledger, method, error) : 0;
@@ -48,7 +49,7 @@ add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hi
   if (tf_value (ledger, NULL, 0, "SELECT 1 FROM run WHERE frame = ?1 AND rule = ?2", "ii", frame, rule_key) != 0)
     return TRUE;
   for (guint k = 0; k < hints->len; k++)
-    if (put_hint (ledger, frame, cid, rule, rule_key, k + 1, g_ptr_array_index (hints, k), method, error) == 0)
+    if (put_hint (ledger, frame, cid, rule, rule_key, k + 1, g_ptr_array_index (hints, k), method, program, error) == 0)
       return FALSE;
   return tf_run (ledger, error, "INSERT INTO run (frame, rule, method, n) VALUES (?1, ?2, ?3, ?4)", "iiii", frame, rule_key,
                  method_key, (gint64)hints->len)
@@ -62,7 +63,7 @@ tf_ledger_add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPt
   g_return_val_if_fail (ledger != NULL && rule != NULL && hints != NULL && method != NULL, FALSE);
   if (!tf_ledger_begin (ledger, error))
     return FALSE;
-  if (!add_hints (ledger, frame, rule, hints, method, error))
+  if (!tf_hints_put (ledger, frame, rule, hints, method, TF_VERSION, error))
     {
       tf_ledger_rollback (ledger);
       return FALSE;

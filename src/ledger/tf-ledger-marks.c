@@ -100,13 +100,12 @@ next_number (TfLedger *ledger, gint64 frame)
     if (query != NULL && tf_query_step (ledger, query, NULL) > 0)
       time = tf_column_double (query, 0);
   }
-  int year = 0;
+  int year = 0; /* of a frame without a time */
   tf_time_calendar ((TfTime){ time }, &year, NULL, NULL, NULL, NULL, NULL);
   g_autofree char *head = g_strdup_printf ("%c%04d-", ledger->letter, year);
-  g_autofree char *past = g_strdup_printf ("%c%04d.", ledger->letter, year);
   gint64 last = tf_value (ledger, NULL, 0,
-                          "SELECT max (CAST (substr (number, ?3) AS INTEGER)) FROM region WHERE number >= ?1 AND number < ?2",
-                          "tti", head, past, (gint64)strlen (head) + 1);
+                          "SELECT max (CAST (substr (number, 7) AS INTEGER)) FROM region WHERE substr (number, 1, 6) = ?1", "t",
+                          head);
   return g_strdup_printf ("%s%04" G_GINT64_FORMAT, head, last + 1);
 }
 
@@ -174,8 +173,8 @@ find_ids (TfLedger *ledger, const TfMarkDeed *deed, Keep *keep, GError **error)
     return FALSE;
   keep->ids.mark = tf_uuid7 (ledger->now (ledger->now_data));
   keep->outline = tf_outline_dup_text (deed->outline);
-  return tf_measure_put (ledger, deed->frame, keep->ids.frame, deed->method, keep->outline, deed->measure, &keep->measure,
-                         error)
+  return tf_measure_put (ledger, deed->frame, keep->ids.frame, deed->method, keep->outline, deed->measure, TF_VERSION,
+                         &keep->measure, error)
          != 0;
 }
 

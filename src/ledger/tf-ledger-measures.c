@@ -132,7 +132,8 @@ insert_sql (void)
 }
 
 static gboolean
-insert (TfLedger *ledger, gint64 frame, gint64 method, const char *cid, const TfMeasure *measure, GError **error)
+insert (TfLedger *ledger, gint64 frame, gint64 method, const char *cid, const TfMeasure *measure, const char *program,
+        GError **error)
 {
   g_autofree char *sql = insert_sql ();
   g_autofree char *time = tf_time_dup_iso (measure->time, 0);
@@ -140,7 +141,7 @@ insert (TfLedger *ledger, gint64 frame, gint64 method, const char *cid, const Tf
   g_autofree char *notes = tf_notes_dup_store (measure->cautions);
   double year = tf_time_is_known (measure->time) ? tf_time_year (measure->time) : NAN;
   g_autoptr (sqlite3_stmt) query
-      = tf_query (ledger, error, sql, "hiittdt", cid, frame, method, TF_VERSION, time, year, codes);
+      = tf_query (ledger, error, sql, "hiittdt", cid, frame, method, program, time, year, codes);
   if (query == NULL)
     return FALSE;
   for (guint k = 0; k < G_N_ELEMENTS (columns); k++)
@@ -162,7 +163,7 @@ tf_method_key (TfLedger *ledger, const char *text, GError **error)
 
 gint64
 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method, const char *outline_text,
-                const TfMeasure *measure, char **cid_out, GError **error)
+                const TfMeasure *measure, const char *program, char **cid_out, GError **error)
 {
   gint64 method_key = tf_method_key (ledger, method, error);
   g_autofree char *cid = tf_content_id ("tiltfield measure 1", frame_cid, method, outline_text, NULL);
@@ -171,7 +172,7 @@ tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const cha
   gint64 key = tf_value (ledger, NULL, 0, "SELECT id FROM measure WHERE cid = ?1", "h", cid);
   if (key == 0)
     {
-      if (!insert (ledger, frame, method_key, cid, measure, error))
+      if (!insert (ledger, frame, method_key, cid, measure, program, error))
         return 0;
       key = sqlite3_last_insert_rowid (ledger->db);
       if (!tf_digest_store (ledger, "measure", key, error))

@@ -35,6 +35,7 @@ struct _TfLedger
   TfNotes *notices;
   gint64 replica;      /* this copy's own replica; 0 until its first deed */
   char *replica_id;    /* hex */
+  gboolean replica_is_new; /* begun in the transaction in hand */
   char letter;
 };
 
@@ -120,11 +121,19 @@ gboolean tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error);
 gboolean tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error);
 extern const char tf_point_all_sql[]; /* every point as it should be, in the order of the table's columns */
 
+/* -- tf-ledger-frames.c, tf-ledger-hints.c: inside a transaction ------------------------------------- */
+gint64 tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane, const TfFrameInfo *info,
+                     double noise_gauss, GError **error);
+gboolean tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime, GError **error);
+gboolean tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints, const char *method,
+                       const char *program, GError **error);
+
 /* -- tf-ledger-measures.c -------------------------------------------------------------------------- */
 gint64 tf_method_key (TfLedger *ledger, const char *text, GError **error);
-/* Puts it in once; its local key, 0 on error. @cid: (out) (nullable) */
+/* Puts it in once; its local key, 0 on error. @program: version that measured. @cid: (out) (nullable) */
 gint64 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method,
-                       const char *outline_text, const TfMeasure *measure, char **cid, GError **error);
+                       const char *outline_text, const TfMeasure *measure, const char *program, char **cid,
+                       GError **error);
 /* Reads the columns of tf_measure_columns_sql beginning at @column. */
 void tf_measure_from_row (TfMeasure *measure, sqlite3_stmt *query, int column);
 char *tf_measure_dup_columns (const char *alias); /* "e.time, e.field_used, ..." */

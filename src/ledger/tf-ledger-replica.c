@@ -156,6 +156,7 @@ tf_replica_begin (TfLedger *ledger, GError **error)
   if (!tf_run (ledger, error, "INSERT INTO replica (id, letter, born) VALUES (?1, ?2, ?3)", "hti", id, letter, now))
     return FALSE;
   ledger->replica = sqlite3_last_insert_rowid (ledger->db);
+  ledger->replica_is_new = TRUE;
   g_free (ledger->replica_id);
   ledger->replica_id = g_strdup (id);
   g_autofree char *ledger_id = tf_text_value (ledger, NULL, "SELECT value FROM setting WHERE key = 'ledger'", "");

@@ -123,7 +123,7 @@ const char tf_ledger_projection_sql[] =
     " undone INTEGER NOT NULL, PRIMARY KEY (replica, seq)) STRICT, WITHOUT ROWID;" /* 0 stands; 1 undone; 2 undone for good */
     "CREATE INDEX deed_person ON deed (person, replica, undone, seq);"
     "CREATE TABLE region (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, number TEXT NOT NULL) STRICT;"
-    "CREATE INDEX region_number ON region (number);"
+    "CREATE INDEX region_number ON region (substr (number, 1, 6), CAST (substr (number, 7) AS INTEGER));"
     "CREATE TABLE mark (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, replica INTEGER NOT NULL, seq INTEGER NOT NULL,"
     " region INTEGER NOT NULL REFERENCES region (id), frame INTEGER NOT NULL REFERENCES frame (id),"
     " person INTEGER NOT NULL REFERENCES person (id), origin INTEGER NOT NULL, hint INTEGER REFERENCES hint (id),"
@@ -266,8 +266,9 @@ run_migration (TfLedger *ledger, const TfMigration *migration, GError **error)
   return tf_run_script (ledger, version, error);
 }
 
+/* What is there already stays. */
 static gboolean
-stamp_new (TfLedger *ledger, GError **error)
+stamp (TfLedger *ledger, GError **error)
 {
   g_autofree char *id = tf_uuid7 (ledger->now (ledger->now_data));
   g_autofree char *application = g_strdup_printf ("PRAGMA application_id = %d", TF_LEDGER_APPLICATION);
@@ -292,7 +293,7 @@ tf_ledger_migrate (TfLedger *ledger, int from, gboolean is_new, GError **error)
         tf_ledger_rollback (ledger);
         return FALSE;
       }
-  if (is_new && !stamp_new (ledger, error))
+  if (!stamp (ledger, error))
     {
       tf_ledger_rollback (ledger);
       return FALSE;

@@ -259,7 +259,10 @@ gboolean
 tf_ledger_commit (TfLedger *ledger, GError **error)
 {
   if (tf_run (ledger, error, "COMMIT", ""))
-    return TRUE;
+    {
+      ledger->replica_is_new = FALSE;
+      return TRUE;
+    }
   tf_ledger_rollback (ledger);
   return FALSE;
 }
@@ -270,4 +273,7 @@ tf_ledger_rollback (TfLedger *ledger)
   /* SQLite may have rolled back already (disk full); an error here says no more than the one being reported. */
   if (!sqlite3_get_autocommit (ledger->db))
     tf_run (ledger, NULL, "ROLLBACK", "");
+  if (ledger->replica_is_new)
+    ledger->replica = 0;
+  ledger->replica_is_new = FALSE;
 }

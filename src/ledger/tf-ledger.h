@@ -113,6 +113,11 @@ gboolean tf_ledger_add_hints (TfLedger *ledger, gint64 frame, const char *rule, 
 /** tf_ledger_has_hints: whether the rule was run on the frame. */
 gboolean tf_ledger_has_hints (TfLedger *ledger, gint64 frame, const char *rule);
 
+/** tf_ledger_gather: the machine rows of a part ledger (its frames, hints, measures) into @ledger, in which they end as if they had been
+ * filled in there. What people did in @part is not taken: that travels in parcels; @said gets a note when there is any.
+ * @n_frames, @n_hints: (out) (nullable): new ones */
+gboolean tf_ledger_gather (TfLedger *ledger, TfLedger *part, guint *n_frames, guint *n_hints, TfNotes *said, GError **error);
+
 /* -- marks ----------------------------------------------------------------------------------- */
 typedef enum
 {
