@@ -47,6 +47,7 @@ const TfNoteKind tf_note_kinds_frame[] = {
   { "no-time-no-place", TF_NOTE_REFUSAL, N_("DATE-OBS = '{0}' is no date: without the time the observer's place, and so every latitude and longitude, is unknown; write the date into the header.") },
   { "north-taken-up", TF_NOTE_CAUTION, N_("The header does not say how the picture is turned: solar north is taken to be up.") },
   { "not-the-sun", TF_NOTE_REFUSAL, N_("Nothing in the header says that this is a picture of the Sun; give a solar magnetogram.") },
+  { "oblique-map", TF_NOTE_REFUSAL, N_("The map's rows do not run along the Sun's parallels (CRVAL2 = {0:.3f}°, or its axes are turned): give it in Carrington longitude with CRVAL2 = 0.") },
   { "observer-earth", TF_NOTE_REPAIR, N_("The header does not say from where the frame was taken: the Earth's place at that time is used.") },
   { "observer-part-earth", TF_NOTE_REPAIR, N_("The header says only in part from where the frame was taken: the rest is the Earth's at that time.") },
   { "old-keyword", TF_NOTE_REPAIR, N_("{0} = {1:.6g} is read as {2} = {3:.8g}.") },

@@ -101,6 +101,15 @@ copy_wcs (const struct wcsprm *wcs, TfGeometry *g)
     }
 }
 
+/* Cylindrical maps are read with their rows along the Sun's parallels only: Paper II makes others oblique. */
+static gboolean
+is_oblique (const TfGeometry *g)
+{
+  double turned = fabs (g->cd[0][1] / g->cd[0][0]) + fabs (g->cd[1][0] / g->cd[1][1]);
+  return (g->projection == TF_PROJECTION_CEA || g->projection == TF_PROJECTION_CAR)
+         && (fabs (g->crval_deg[1]) > 1e-6 || !(turned < 1e-6));
+}
+
 /* Share of the limb that falls on the picture. */
 static double
 limb_share (const TfGeometry *g)
@@ -149,6 +158,13 @@ tf_info_read_geometry (const TfHeader *header, TfFrameInfo *info)
     return FALSE;
   g->projection = projection;
   copy_wcs (set, g);
+  if (is_oblique (g))
+    {
+      info->role = TF_ROLE_REFUSED;
+      g_clear_pointer (&info->refusal, tf_note_free);
+      info->refusal = tf_note_new ("oblique-map", "d", g->crval_deg[1]);
+      return FALSE;
+    }
   if (!tf_geometry_make (g))
     return FALSE;
   info->kind = kind_of (header, g);

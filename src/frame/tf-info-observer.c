@@ -44,9 +44,9 @@ tf_header_angular_radius (const TfHeader *header)
 }
 
 static void
-complete_longitudes (TfObserver *o, const TfObserver *earth, TfNotes *cautions)
+complete_longitudes (TfObserver *o, TfTime time, const TfObserver *earth, TfNotes *cautions)
 {
-  double l0 = earth->carrington_lon_deg;
+  double l0 = tf_observer_carrington (time, 0, isnan (o->distance_m) ? earth->distance_m : o->distance_m);
   if (isnan (o->stonyhurst_lon_deg))
     o->stonyhurst_lon_deg = tf_wrap_180 (o->carrington_lon_deg - l0);
   else if (isnan (o->carrington_lon_deg))
@@ -112,7 +112,7 @@ tf_info_read_observer (const TfHeader *header, TfFrameInfo *info)
       return;
     }
   settle_distance (header, info, &o);
-  complete_longitudes (&o, &earth, info->cautions);
+  complete_longitudes (&o, info->time, &earth, info->cautions);
   guint given = !isnan (o.distance_m) + !isnan (o.b0_deg) + !isnan (o.carrington_lon_deg);
   complete_from_earth (&o, &earth, given, info);
   info->geometry.observer = o;

@@ -11,7 +11,8 @@
 #include "tf-witness.h"
 
 /* What every real file must be, written down from its header and from the data's index before the library was asked.
- * Stonyhurst longitudes and the Earth's places are sunpy 4.1's (L0, B0, earth_distance) at the frame's time. NaN in a
+ * Stonyhurst longitudes are sunpy 4.1's of an observer at
+ * the header's Carrington place and distance, the Earth's places its L0, B0 and earth_distance. NaN in a
  * number: no value expected. An empty @refusal: a field that opens. */
 typedef struct
 {
@@ -32,17 +33,17 @@ typedef struct
 
 static const Truth truths[] = {
   { "magnetograms/mdi.fd_m_96m_lev182.20101015_000000_TAI.data.fits", TF_KIND_DISK, TF_ROLE_FIELD, TF_FIELD_LOS, "", "",
-    "2010-10-15T00:02:56Z", "T_OBS", 147937426993.65 / TF_AU_M, 5.91587, 0.0991, 203.46173, TF_OBSERVER_HEADER, 1.986008, 0,
+    "2010-10-15T00:02:56Z", "T_OBS", 147937426993.65 / TF_AU_M, 5.91587, 0.09975, 203.46173, TF_OBSERVER_HEADER, 1.986008, 0,
     "SOHO MDI", NAN },
   { "magnetograms/mdi.fd_M_96m_lev182.20101015_191200_TAI.data.fits", TF_KIND_DISK, TF_ROLE_FIELD, TF_FIELD_LOS, "", "limb-off",
-    "2010-10-15T19:14:56Z", "T_OBS", 147904704539.75 / TF_AU_M, 5.85769, 0.0921, 192.90198, TF_OBSERVER_HEADER, 31.77609, 0,
+    "2010-10-15T19:14:56Z", "T_OBS", 147904704539.75 / TF_AU_M, 5.85769, 0.09278, 192.90198, TF_OBSERVER_HEADER, 31.77609, 0,
     "SOHO MDI", NAN },
   { "magnetograms/mdi.fd_M_96m_lev182.20110401_000000_TAI.data.fits", TF_KIND_DISK, TF_ROLE_FIELD, TF_FIELD_LOS, "", "",
-    "2011-04-01T00:02:56Z", "T_OBS", 148184496664.88 / TF_AU_M, -6.5318, 0.1526, 149.875, TF_OBSERVER_HEADER, 1.986059, -3.0978,
+    "2011-04-01T00:02:56Z", "T_OBS", 148184496664.88 / TF_AU_M, -6.5318, 0.15332, 149.875, TF_OBSERVER_HEADER, 1.986059, -3.0978,
     "SOHO MDI", NAN },
   /* OBS_R0 = 984.9524" and 695.7 Mm give 0.97389 au; DSUN_OBS says 1 au, which is not the spacecraft's place */
   { "magnetograms/mdi_fd_M_96m_01d.5874.0005_s.fits", TF_KIND_DISK, TF_ROLE_FIELD, TF_FIELD_LOS, "", "distance-disagrees",
-    "2009-01-31T08:02:56Z", "T_OBS", 0.973887, -6.02897, -0.0794, 130.88929, TF_OBSERVER_HEADER, 15.88479, 180, "SOHO MDI", NAN },
+    "2009-01-31T08:02:56Z", "T_OBS", 0.973887, -6.02897, -0.07848, 130.88929, TF_OBSERVER_HEADER, 15.88479, 180, "SOHO MDI", NAN },
   { "magnetograms/mwo_m110331_1781_0na1.fits", TF_KIND_DISK, TF_ROLE_FIELD, TF_FIELD_LOS, "", "north-taken-up limb-off",
     "2011-03-31T17:48:50Z", "TAVG-UT", 0.9990002, -6.58111, 0.0123, 153.1617, TF_OBSERVER_HEADER_EARTH, 3.75077, 0,
     "MT. WILSON 150 ft", NAN },
@@ -75,7 +76,7 @@ static const Truth truths[] = {
   { "headers/sunpy_mdi_synoptic.header", TF_KIND_MAP, TF_ROLE_FIELD, TF_FIELD_RADIAL, "", "impossible-cdelt2",
     "2010-07-27T00:08:31Z", "T_OBS", NONE, "SOHO MDI", 2099 },
   { "headers/sunpy_mdi.fd_Ic.20101015_230100_TAI.data.header", TF_KIND_DISK, TF_ROLE_INTENSITY, TF_FIELD_UNKNOWN, "intensity", "",
-    "2010-10-15T23:00:26Z", "T_OBS", 147898297373.48 / TF_AU_M, 5.84617, 0.0907, 190.83495, TF_OBSERVER_HEADER, 15.888041, 0, "SOHO MDI", NAN },
+    "2010-10-15T23:00:26Z", "T_OBS", 147898297373.48 / TF_AU_M, 5.84617, 0.0914, 190.83495, TF_OBSERVER_HEADER, 15.888041, 0, "SOHO MDI", NAN },
   { "headers/sunpy_solo_L2_phi-hrt-blos_20220307T000009_V202208311927_0243070101.header", TF_KIND_CUT_OUT, TF_ROLE_FIELD, TF_FIELD_LOS, "", "",
     "2022-03-07T00:00:32Z", "DATE-AVG", 0.50143555, -4.29241, -0.61965, 5.88158, TF_OBSERVER_HEADER, 0.5, 0.59185, "SOLO/PHI/HRT", NAN },
   { "headers/sunpy_solo_L2_phi-hrt-bazi_20220307T000009_V202208311927_0243070101.header", TF_KIND_CUT_OUT, TF_ROLE_REFUSED, TF_FIELD_UNKNOWN,
@@ -87,7 +88,7 @@ static const Truth truths[] = {
     "2011-06-25T18:56:07Z", "DATE-OBS", 1.01606, 2.2301, -0.014, 95.51645, TF_OBSERVER_HEADER, 1.0000, 0, "solis vsm", NAN },
 
   { "broken/mdi.fd_Ic.20101015_230100_TAI.data.fits", TF_KIND_DISK, TF_ROLE_INTENSITY, TF_FIELD_UNKNOWN, "intensity", "",
-    "2010-10-15T23:00:26Z", "T_OBS", 147898297373.48 / TF_AU_M, 5.84617, 0.0907, 190.83495, TF_OBSERVER_HEADER, 15.888041, 0, "SOHO MDI", NAN },
+    "2010-10-15T23:00:26Z", "T_OBS", 147898297373.48 / TF_AU_M, 5.84617, 0.0914, 190.83495, TF_OBSERVER_HEADER, 15.888041, 0, "SOHO MDI", NAN },
   { "broken/resampled_hmi_CONTINUUM.fits", TF_KIND_DISK, TF_ROLE_INTENSITY, TF_FIELD_UNKNOWN, "intensity", "",
     "2014-03-01T00:00:50Z", "T_OBS", 148205511547.72 / TF_AU_M, -7.226688, 0.0713, 132.560135, TF_OBSERVER_HEADER, 20.655759, -179.929779,
     "SDO/HMI", NAN },
