@@ -33,11 +33,14 @@ noisy_disk (const TfGeometry *g, guint32 seed, gboolean active)
   return pixels;
 }
 
+/* @step: the values are stored in whole steps of this; 0: as they are. */
 static void
-check_noise (gboolean active, guint32 seed)
+check_noise (gboolean active, guint32 seed, float step)
 {
   TfFrameInfo *info = disk_info (SIDE, 240, 20);
   g_autofree float *pixels = noisy_disk (&info->geometry, seed, active);
+  for (guint k = 0; k < SIDE * SIDE && step > 0; k++)
+    pixels[k] = step * roundf (pixels[k] / step);
   g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
   guint n = 0;
   const TfNoiseRing *rings = tf_frame_get_noise (frame, &n);
@@ -45,7 +48,7 @@ check_noise (gboolean active, guint32 seed)
   for (guint k = 1; k < n; k++)
     g_assert_cmpfloat (rings[k].mu, >, rings[k - 1].mu);
   for (double mu = 0.2; mu < 0.96; mu += 0.15)
-    tf_check_near ("sigma within 5 %", tf_frame_noise_at (frame, mu) / (12 * (2 - mu)), 1, 0.05);
+    tf_check_near ("sigma within 5 %", tf_frame_noise_at (frame, mu) / hypot (12 * (2 - mu), step / sqrt (12)), 1, 0.05);
   tf_check_near ("held at the end", tf_frame_noise_at (frame, 1.0), rings[n - 1].gauss, 1e-9);
   tf_check_nan ("no mu, no sigma", tf_frame_noise_at (frame, NAN));
   tf_check_near ("independent pixels", tf_frame_noise_correlation (frame), 1, 0.1);
@@ -56,8 +59,20 @@ test_noise (void)
 {
   for (guint32 seed = 1; seed < 4; seed++)
     {
-      check_noise (FALSE, seed);
-      check_noise (TRUE, seed);
+      check_noise (FALSE, seed, 0);
+      check_noise (TRUE, seed, 0);
+    }
+}
+
+/* A median of whole numbers is a whole number: the runs of equal values must be looked into. */
+static void
+test_stepped_noise (void)
+{
+  for (guint32 seed = 1; seed < 4; seed++)
+    {
+      check_noise (FALSE, seed, 1);
+      check_noise (TRUE, seed, 5);
+      check_noise (FALSE, seed, 10);
     }
 }
 
@@ -213,6 +228,7 @@ void
 add_pixel_tests (void)
 {
   g_test_add_func ("/frame/noise/within-5-percent-also-on-an-active-disk", test_noise);
+  g_test_add_func ("/frame/noise/within-5-percent-where-values-are-stored-in-steps", test_stepped_noise);
   g_test_add_func ("/frame/noise/correlation-of-smoothed-noise", test_correlation);
   g_test_add_func ("/frame/noise/none-and-nothing", test_no_noise);
   g_test_add_func ("/frame/pyramid/box-means-know-nan-and-edges", test_pyramid);
