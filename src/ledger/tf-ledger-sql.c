@@ -13,13 +13,19 @@
 
 G_DEFINE_QUARK (tf-ledger-error-quark, tf_ledger_error)
 
-/* A write that fails because the disk, a quota or a size limit is reached is "full" whatever SQLite calls it. */
+/* A write that fails because the disk, a quota or a size limit is reached is "full" whatever SQLite calls it. SQLite does not always
+ * pass the system's code on; errno still has it right after the call. */
 static gboolean
 is_full (sqlite3 *db, int rc)
 {
+  int last = errno;
   if ((rc & 0xff) == SQLITE_FULL)
     return TRUE;
-  int code = (rc & 0xff) == SQLITE_IOERR && db != NULL ? sqlite3_system_errno (db) : 0;
+  if ((rc & 0xff) != SQLITE_IOERR || db == NULL)
+    return FALSE;
+  int code = sqlite3_system_errno (db);
+  if (code == 0 && rc == SQLITE_IOERR_WRITE)
+    code = last;
   return code == ENOSPC || code == EDQUOT || code == EFBIG;
 }
 
