@@ -161,7 +161,7 @@ write_file (const char *path, const GArray *rows, const GArray *facts)
 gboolean
 tf_export_fits (const char *path, const GArray *rows, const GArray *facts, GError **error)
 {
-  g_autofree char *part = g_strdup_printf ("%s.%08x.part", path, g_random_int ());
+  g_autofree char *part = g_strdup_printf ("%s.%" G_GINT64_MODIFIER "x.part", path, g_get_monotonic_time ());
   char reason[FLEN_STATUS] = "";
   int status = write_file (part, rows, facts);
   if (status == 0 && g_rename (part, path) == 0)
