@@ -58,8 +58,8 @@ static const Region autumn_regions[] = {
 };
 
 static const Region autumn_complex[] = {
-  { "kestrel", "quadrupole", 18.0, 20.0, 5.0, 9.0, -1, 7.0e21, 1.1, 1.5, 6, 0, 0, 0 },
-  { "kestrel", "quadrupole", 21.0, 16.6, 4.4, -38.0, 1, 6.0e21, 1.0, 1.3, 4, 0, 0, 0 },
+  { "kestrel", "quadrupole", 18.0, 19.2, 3.8, 9.0, -1, 7.0e21, 1.1, 1.5, 6, 0, 0, 0 },
+  { "kestrel", "quadrupole", 19.2, 17.4, 3.4, -12.0, 1, 6.0e21, 1.0, 1.3, 4, 0, 0, 0 },
   { NULL },
 };
 
