@@ -17,7 +17,10 @@ typedef struct
   TfLaneFunc func;
   gpointer data;
   GDestroyNotify free_data, free_result;
-  GTask *task;
+  GTask *task; /* touched in the main thread only: it may hold the last reference of its source */
+  GCancellable *cancellable;
+  gpointer result;
+  GError *error;
 } Job;
 
 static void
@@ -26,6 +29,8 @@ job_free (Job *job)
   if (job->free_data != NULL && job->data != NULL)
     job->free_data (job->data);
   g_clear_object (&job->task);
+  g_clear_object (&job->cancellable);
+  g_clear_error (&job->error);
   g_free (job);
 }
 
@@ -40,19 +45,25 @@ open_ledger (TfLane *lane, GError **error)
 static void
 run_job (Job *job, TfLedger *ledger, const GError *trouble)
 {
-  if (g_task_return_error_if_cancelled (job->task))
+  if (g_cancellable_set_error_if_cancelled (job->cancellable, &job->error))
     return;
   if (ledger == NULL)
-    {
-      g_task_return_error (job->task, g_error_copy (trouble));
-      return;
-    }
-  GError *error = NULL;
-  gpointer result = job->func (ledger, job->data, &error);
-  if (error != NULL)
-    g_task_return_error (job->task, error);
+    job->error = g_error_copy (trouble);
   else
-    g_task_return_pointer (job->task, result, job->free_result);
+    job->result = job->func (ledger, job->data, &job->error);
+}
+
+/* Back in the main thread. */
+static gboolean
+hand_over (gpointer data)
+{
+  Job *job = data;
+  if (job->error != NULL)
+    g_task_return_error (job->task, g_steal_pointer (&job->error));
+  else
+    g_task_return_pointer (job->task, job->result, job->free_result);
+  job_free (job);
+  return G_SOURCE_REMOVE;
 }
 
 static gpointer
@@ -76,7 +87,7 @@ lane_main (gpointer data)
           ledger = open_ledger (lane, &trouble);
         }
       run_job (job, ledger, trouble);
-      job_free (job);
+      g_idle_add_full (G_PRIORITY_DEFAULT, hand_over, job, NULL);
     }
   return NULL;
 }
@@ -125,6 +136,7 @@ tf_lane_push (TfLane *lane, gpointer source, GCancellable *cancellable, TfLaneFu
   job->free_data = free_data;
   job->free_result = free_result;
   job->task = g_task_new (source, cancellable, done, user_data);
+  job->cancellable = cancellable != NULL ? g_object_ref (cancellable) : NULL;
   g_async_queue_push (lane->jobs, job);
 }
 

@@ -235,7 +235,7 @@ measure_in_thread (GTask *task, gpointer source, gpointer data, GCancellable *ca
 static void
 measured_at_rest (GObject *source, GAsyncResult *result, gpointer data)
 {
-  TfSession *self = TF_SESSION (source);
+  g_autoptr (TfSession) self = data; /* not the task's source: the worker may let go of that last */
   const Rest *rest = g_task_get_task_data (G_TASK (result));
   guint64 serial = rest->serial;
   g_autoptr (GError) error = NULL;
@@ -268,7 +268,7 @@ measure_at_rest (TfSession *self)
   rest->params = self->params;
   rest->params.outline_term = TRUE;
   rest->serial = self->draft_serial;
-  g_autoptr (GTask) task = g_task_new (self, NULL, measured_at_rest, NULL);
+  g_autoptr (GTask) task = g_task_new (NULL, NULL, measured_at_rest, g_object_ref (self));
   g_task_set_task_data (task, rest, rest_free);
   g_task_run_in_thread (task, measure_in_thread);
 }

@@ -314,7 +314,7 @@ look_in_thread (GTask *task, gpointer source, gpointer data, GCancellable *cance
 static void
 looked_at (GObject *source, GAsyncResult *result, gpointer data)
 {
-  TfSession *self = TF_SESSION (source);
+  g_autoptr (TfSession) self = data; /* not the task's source: the worker may let go of that last */
   g_autoptr (GError) error = NULL;
   GPtrArray *rows = g_task_propagate_pointer (G_TASK (result), &error);
   if (rows == NULL)
@@ -345,7 +345,7 @@ look_at (TfSession *self, char *const *paths)
   for (guint k = 0; paths[k] != NULL; k++)
     g_ptr_array_add (all, g_strdup (paths[k]));
   g_ptr_array_add (all, NULL);
-  g_autoptr (GTask) task = g_task_new (self, NULL, looked_at, NULL);
+  g_autoptr (GTask) task = g_task_new (NULL, NULL, looked_at, g_object_ref (self));
   g_task_set_task_data (task, g_ptr_array_free (g_steal_pointer (&all), FALSE), (GDestroyNotify)g_strfreev);
   g_task_run_in_thread (task, look_in_thread);
 }
@@ -426,6 +426,11 @@ tf_session_add_frames (TfSession *self, char *const *paths)
   g_return_if_fail (TF_IS_SESSION (self) && paths != NULL);
   if (self->path == NULL)
     look_at (self, paths);
+  else if (!self->open)
+    {
+      g_strfreev (self->to_add);
+      self->to_add = g_strdupv ((char **)paths);
+    }
   else if (self->feed != NULL)
     tf_session_say (self, _ ("Frames are being taken in just now; add these when that is done."));
   else

@@ -149,6 +149,9 @@ take_ledger_state (TfSession *self, Reading *r)
   tf_session_emit (self, TF_SIGNAL_LEDGER);
   for (guint k = 0; r->notices != NULL && r->notices[k] != NULL; k++)
     tf_session_say (self, r->notices[k]);
+  g_auto (GStrv) waiting = g_steal_pointer (&self->to_add);
+  if (waiting != NULL)
+    tf_session_add_frames (self, waiting);
 }
 
 static void
@@ -260,6 +263,8 @@ tf_session_close (TfSession *self)
     g_cancellable_cancel (self->reading);
   g_clear_object (&self->reading);
   g_clear_pointer (&self->feed, tf_feed_free);
+  g_clear_pointer (&self->progress, g_free);
+  g_clear_pointer (&self->to_add, g_strfreev);
   if (self->writer != NULL)
     {
       g_signal_handlers_disconnect_by_data (self->writer, self);
@@ -287,7 +292,7 @@ tf_session_open_ledger (TfSession *self, const char *path, char letter)
     self->path = g_strdup (path);
   self->reading = g_cancellable_new ();
   self->reader = tf_lane_new (self->path, letter);
-  self->writer = tf_writer_new (self->path, letter);
+  self->writer = tf_writer_new (self->path, 0); /* opens the file with its first deed */
   tf_session_connect_writer (self);
   self->refresh_all = TRUE;
   start_reading (self);

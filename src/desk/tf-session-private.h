@@ -62,6 +62,7 @@ struct _TfSession
   TfFeed *feed;
   char *progress; /* words of the feed */
   double progress_share;
+  char **to_add;      /* frames that wait until the ledger is open */
   char *feed_trouble; /* files that could not be taken in, one sentence a line */
 
   TfView view;

@@ -98,10 +98,11 @@ made (GObject *source, GAsyncResult *result, gpointer data)
 {
   Order *order = g_task_get_task_data (G_TASK (result));
   g_autoptr (GdkTexture) texture = g_task_propagate_pointer (G_TASK (result), NULL);
+  g_autoptr (TfFrameItem) item = g_steal_pointer (&order->item); /* let go of here, not in the worker */
   if (g_cancellable_is_cancelled (g_task_get_cancellable (G_TASK (result))))
     return; /* the roll is gone */
   if (texture != NULL)
-    tf_frame_item_set_thumbnail (order->item, texture);
+    tf_frame_item_set_thumbnail (item, texture);
   order->thumbs->busy = FALSE;
   make_next (order->thumbs);
 }

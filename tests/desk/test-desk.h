@@ -1,0 +1,21 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+#include <gtk/gtk.h>
+
+#include "tf-session.h"
+
+/** Turns the main loop until @test is TRUE; fails after ten seconds. */
+typedef gboolean (*TestUntil) (gpointer data);
+void test_desk_wait (const char *what, TestUntil test, gpointer data);
+/** A path in a folder of the program's own, which is removed at its end. */
+char *test_desk_path (const char *name);
+/** A session with a new ledger that holds one demo frame with its hints, open on the plate; person "north desk". */
+TfSession *test_desk_session (const char *ledger_path);
+gboolean test_desk_has_display (void);
+
+void test_desk_add_words (void);
+void test_desk_add_session (void);
+void test_desk_add_window (void);
