@@ -7,6 +7,30 @@
 
 /* One row a code, in the order of the code's name. */
 const TfNoteKind tf_note_kinds_region[] = {
+  { "complexity-coarse", TF_NOTE_CAUTION,
+    N_ ("The frame's pixels are too coarse for the reference resolution of {0:.1f} Mm: gradients and R come out too low. Compare with "
+        "frames of the same instrument only.") },
+  { "complexity-describes", TF_NOTE_INFO,
+    N_ ("Complexity figures are a description of the field, not a flare forecast.") },
+  { "complexity-limb-asked", TF_NOTE_STRONG,
+    N_ ("The region is at mu {0:.2f}, nearer the limb than {1:.2f}: false inversion lines appear on the limbward side of spots. The "
+        "figures were asked for; do not compare them with others.") },
+  { "complexity-map", TF_NOTE_REASON,
+    N_ ("Complexity is not given on a map, whose columns are of different times: measure the region on a frame of the disk.") },
+  { "complexity-missing-data", TF_NOTE_CAUTION,
+    N_ ("{0:.0f} % of the outline has no value at the reference resolution: lines may be cut and the figures are those of the rest.") },
+  { "complexity-near-limb", TF_NOTE_REASON,
+    N_ ("Complexity is not given at mu {0:.2f}, below {1:.2f}: false inversion lines appear there. Take a frame nearer central meridian, or "
+        "ask for it anyway.") },
+  { "delta-apart", TF_NOTE_REASON,
+    N_ ("No delta candidate: the nearest strong cores of opposite polarity are {0:.0f} Mm apart, more than {1:.0f} Mm.") },
+  { "delta-candidate", TF_NOTE_CAUTION,
+    N_ ("Delta candidate: cores above {0:.0f} G of opposite polarity lie {1:.0f} Mm apart across a line of strong gradient (up to {2:.0f} "
+        "G/Mm). A magnetogram cannot show a common penumbra: look at an intensity frame before you call it delta.") },
+  { "delta-gentle", TF_NOTE_REASON,
+    N_ ("No delta candidate: strong cores of opposite polarity lie {0:.0f} Mm apart, but no line between them reaches {1:.0f} G/Mm.") },
+  { "delta-no-cores", TF_NOTE_REASON,
+    N_ ("No delta candidate: one polarity or both have no core above {0:.0f} G at the reference resolution.") },
   { "floor-below-noise", TF_NOTE_CAUTION,
     N_ ("The floor is {0:.1f} G in the observed field here, less than twice the noise of {1:.1f} G: noise adds to the flux. "
         "Raise the floor or leave frames this near the limb out.") },

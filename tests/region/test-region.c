@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
+#include "inversion-builder.h"
 #include "region-builder.h"
 
 int
@@ -9,5 +10,7 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   add_tilt_tests ();
   add_bipole_tests ();
+  add_inversion_tests ();
+  add_complexity_tests ();
   return g_test_run ();
 }
