@@ -6,12 +6,13 @@
 #include "tf-export.h"
 #include "tf-mount-wilson.h"
 
-/* The flat columns. A number that is not there is NaN, a text "". Yes/no and whole numbers come as doubles and are NaN when missing.
- * Values stay in Mx, G and millionths of the hemisphere; the units are written so that standard readers parse them: 1 Mx = 1e-8 Wb,
- * 1 G = 1e-4 T (VOUnits 1.0; FITS standard 4.0 section 4.3). UCDs are of the UCD1+ list of IVOA.
+/* The flat columns. A number that is not there is NaN, a text "". Yes/no and whole numbers come
+ * as doubles and are NaN when missing. Values stay in Mx, G and millionths of the hemisphere;
+ * the units are written so that standard readers parse them: 1 Mx = 1e-8 Wb, 1 G = 1e-4 T
+ * (VOUnits 1.0; FITS standard 4.0 section 4.3). UCDs are of the UCD1+ list of IVOA.
  */
 
-/* -- getting at a row ---------------------------------------------------------------------------- */
+/* -- getting at a row ------------------------------------------------------------------------- */
 
 static char *
 text_or_empty (const char *text)
@@ -49,22 +50,14 @@ pole_lon (const TfExportRow *r, gboolean leading)
 }
 
 #define TEXT(name, expression)                                                                     \
-  static char *name (const TfExportRow *r)                                                         \
-  {                                                                                                \
-    return text_or_empty (expression);                                                             \
-  }
+  static char *name (const TfExportRow *r) { return text_or_empty (expression); }
 #define TAKE(name, expression)                                                                     \
-  static char *name (const TfExportRow *r)                                                         \
-  {                                                                                                \
-    return expression;                                                                             \
-  }
+  static char *name (const TfExportRow *r) { return expression; }
 #define NUMBER(name, expression)                                                                   \
-  static double name (const TfExportRow *r)                                                        \
-  {                                                                                                \
-    return expression;                                                                             \
-  }
+  static double name (const TfExportRow *r) { return expression; }
 #define M (r->row->measure)
 
+/* clang-format off */
 TEXT (get_region, r->row->region)
 TEXT (get_passage, r->row->passage)
 TEXT (get_mark, r->row->mark_id)
@@ -123,7 +116,7 @@ NUMBER (get_class_delta,
 NUMBER (get_unipolar, int_or_nan (r->row->is_hint, r->row->unipolar != 0))
 NUMBER (get_simulated, r->row->simulated != 0)
 
-/* -- the table ---------------------------------------------------------------------------------- */
+/* -- the table -------------------------------------------------------------------------------- */
 
 #define DEG "deg", "deg"
 #define MX "10**-8 Wb", "1e-8Wb"
@@ -198,3 +191,4 @@ const TfColumn tf_columns[] = {
   AS_BOOL ("simulated", "meta.code", "the frame is simulated", get_simulated),
   { NULL },
 };
+/* clang-format on */

@@ -7,15 +7,16 @@
 #include "tf-export-private.h"
 #include "tf-number.h"
 
-/* RFC 4180: fields parted by commas, lines ended by CR LF, quotes doubled. Before the header line stand "# key: text" lines. A missing
- * value is empty; yes and no are true and false.
+/* RFC 4180: fields parted by commas, lines ended by CR LF, quotes doubled. Before the header
+ * line stand "# key: text" lines. A missing value is empty; yes and no are true and false.
  */
 
 static void
 put_text (GString *out, const char *text)
 {
   gsize n = strlen (text);
-  gboolean plain = strpbrk (text, ",\"\r\n") == NULL && text[0] != '#' && text[0] != ' ' && (n == 0 || text[n - 1] != ' ');
+  gboolean plain = strpbrk (text, ",\"\r\n") == NULL && text[0] != '#' && text[0] != ' '
+                   && (n == 0 || text[n - 1] != ' ');
   if (plain)
     {
       g_string_append (out, text);

@@ -10,8 +10,9 @@
 #include "tf-export-private.h"
 #include "tf-mount-wilson.h"
 
-/* A FITS binary table in HDU 1, with units, descriptions and UCDs, CHECKSUM and DATASUM. FITS holds ASCII alone: classes are written with
- * the names of their letters, other letters as their nearest; the header says so. A missing number is NaN, a missing whole number or yes/no
+/* A FITS binary table in HDU 1, with units, descriptions and UCDs, CHECKSUM and DATASUM. FITS
+ * holds ASCII alone: classes are written with the names of their letters, other letters as
+ * their nearest; the header says so. A missing number is NaN, a missing whole number or yes/no
  * (1, 0) the value of TNULL, a missing text empty.
  */
 
@@ -25,7 +26,8 @@ static char *
 dup_ascii_cell (const TfColumn *column, const TfExportRow *row)
 {
   g_autofree char *text = column->text (row);
-  char *ascii = strcmp (column->name, "class") == 0 ? tf_mount_wilson_dup_ascii (text) : g_str_to_ascii (text, "C");
+  char *ascii = strcmp (column->name, "class") == 0 ? tf_mount_wilson_dup_ascii (text)
+                                                    : g_str_to_ascii (text, "C");
   for (char *p = ascii; *p != '\0'; p++)
     if (!g_ascii_isprint (*p))
       *p = ' ';
@@ -56,7 +58,8 @@ dup_form (const TfColumn *column, const GArray *rows)
   return g_strdup_printf ("%" G_GSIZE_FORMAT "A", width);
 }
 
-/* As bytes, so that texts end in 0 and an empty one is null (FITS standard 4.0, 7.3.3.1); CFITSIO's own strings end in blanks. */
+/* As bytes, so that texts end in 0 and an empty one is null (FITS standard 4.0, 7.3.3.1);
+ * CFITSIO's own strings end in blanks. */
 static void
 write_texts (fitsfile *file, int k, const TfColumn *column, const GArray *rows, int *status)
 {
@@ -78,7 +81,9 @@ write_numbers (fitsfile *file, int k, const TfColumn *column, const GArray *rows
   for (guint j = 0; j < rows->len; j++)
     {
       values[j] = tf_column_number (column, &g_array_index (rows, TfExportRow, j));
-      whole[j] = isnan (values[j]) ? none : (int)lrint (column->type == TF_COLUMN_NUMBER ? 0.0 : values[j]);
+      whole[j] = isnan (values[j])
+                     ? none
+                     : (int)lrint (column->type == TF_COLUMN_NUMBER ? 0.0 : values[j]);
     }
   if (rows->len == 0)
     return;
@@ -113,13 +118,15 @@ write_facts (fitsfile *file, const GArray *facts, int *status)
       g_autofree char *line = g_strdup_printf ("%s: %s", fact->key, ascii);
       fits_write_comment (file, line, status);
     }
-  fits_write_comment (file,
-                      "FITS holds ASCII alone: Mount Wilson classes are written by the names of their letters "
-                      "(beta-gamma-delta), other letters as the nearest of the alphabet.",
-                      status);
+  fits_write_comment (
+      file,
+      "FITS holds ASCII alone: Mount Wilson classes are written by the names of their letters "
+      "(beta-gamma-delta), other letters as the nearest of the alphabet.",
+      status);
 }
 
-/* CHECKSUM and DATASUM without the time that CFITSIO would add to their comments: equal rows make equal files. */
+/* CHECKSUM and DATASUM without the time that CFITSIO would add to their comments: equal rows
+ * make equal files. */
 static void
 write_sums (fitsfile *file, int *status)
 {
@@ -148,8 +155,8 @@ write_table (fitsfile *file, const GArray *rows, const GArray *facts, int *statu
       g_ptr_array_add (units, (gpointer)column->fits_unit);
       g_ptr_array_add (forms, dup_form (column, rows));
     }
-  fits_create_tbl (file, BINARY_TBL, rows->len, (int)names->len, (char **)names->pdata, (char **)forms->pdata,
-                   (char **)units->pdata, "MARKS", status);
+  fits_create_tbl (file, BINARY_TBL, rows->len, (int)names->len, (char **)names->pdata,
+                   (char **)forms->pdata, (char **)units->pdata, "MARKS", status);
   fits_write_key_longwarn (file, status);
   for (guint k = 0; k < names->len; k++)
     write_about_column (file, (int)k + 1, &tf_columns[k], status);
@@ -179,7 +186,8 @@ write_file (const char *path, const GArray *rows, const GArray *facts)
 gboolean
 tf_export_fits (const char *path, const GArray *rows, const GArray *facts, GError **error)
 {
-  g_autofree char *part = g_strdup_printf ("%s.%" G_GINT64_MODIFIER "x.part", path, g_get_monotonic_time ());
+  g_autofree char *part
+      = g_strdup_printf ("%s.%" G_GINT64_MODIFIER "x.part", path, g_get_monotonic_time ());
   char reason[FLEN_STATUS] = "";
   int status = write_file (part, rows, facts);
   if (status == 0 && g_rename (part, path) == 0)

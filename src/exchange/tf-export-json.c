@@ -6,7 +6,8 @@
 #include "tf-export-private.h"
 #include "tf-json.h"
 
-/* One document: what the table says of itself, its columns, its rows as objects. A missing value is null, a missing text too. */
+/* One document: what the table says of itself, its columns, its rows as objects. A missing
+ * value is null, a missing text too. */
 
 static void
 put_cell (JsonBuilder *builder, const TfColumn *column, const TfExportRow *row)
@@ -52,7 +53,8 @@ tf_export_json (const char *path, const GArray *rows, const GArray *facts, GErro
   json_builder_set_member_name (builder, "about");
   json_builder_begin_object (builder);
   for (guint k = 0; k < facts->len; k++)
-    tf_json_string (builder, g_array_index (facts, TfFact, k).key, g_array_index (facts, TfFact, k).text);
+    tf_json_string (builder, g_array_index (facts, TfFact, k).key,
+                    g_array_index (facts, TfFact, k).text);
   json_builder_end_object (builder);
   put_columns (builder);
   json_builder_set_member_name (builder, "rows");

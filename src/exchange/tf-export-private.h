@@ -12,7 +12,8 @@ typedef struct
   char *text;
 } TfFact;
 
-/** tf_facts_new: (element-type TfFact): program, method, floor, convention, study, source, rows. English. */
+/** tf_facts_new: (element-type TfFact): program, method, floor, convention, study, source,
+ * rows. English. */
 GArray *tf_facts_new (const GArray *rows, const TfStudy *study, const char *source);
 
 /** TfFormat: one way to write a table. */
@@ -23,7 +24,8 @@ typedef struct
 } TfFormat;
 
 gboolean tf_export_csv (const char *path, const GArray *rows, const GArray *facts, GError **error);
-gboolean tf_export_votable (const char *path, const GArray *rows, const GArray *facts, GError **error);
+gboolean
+tf_export_votable (const char *path, const GArray *rows, const GArray *facts, GError **error);
 gboolean tf_export_fits (const char *path, const GArray *rows, const GArray *facts, GError **error);
 gboolean tf_export_json (const char *path, const GArray *rows, const GArray *facts, GError **error);
 

@@ -9,12 +9,13 @@
 #include "tf-export-private.h"
 #include "tf-number.h"
 
-/* VOTable 1.4, TABLEDATA. Texts are unicodeChar; a missing text or double is an empty cell, a missing whole number the value that its
- * FIELD names as null, a missing yes/no an empty cell. Units are VOUnits.
+/* VOTable 1.4, TABLEDATA. Texts are unicodeChar; a missing text or double is an empty cell, a
+ * missing whole number the value that its FIELD names as null, a missing yes/no an empty cell.
+ * Units are VOUnits.
  */
 
 #define NULL_INT "-2147483648"
-#define WORD(s) ((const xmlChar *)(s))
+#define WORD(s)  ((const xmlChar *)(s))
 
 static void
 put_attribute (xmlTextWriter *writer, const char *name, const char *value)
@@ -123,7 +124,8 @@ put_document (xmlTextWriter *writer, const GArray *rows, const GArray *facts)
   xmlTextWriterStartDocument (writer, NULL, "UTF-8", NULL);
   xmlTextWriterStartElement (writer, WORD ("VOTABLE"));
   put_attribute (writer, "version", "1.4");
-  put_attribute (writer, "xmlns", "http://www.ivoa.net/xml/VOTable/v1.3"); /* the name space of 1.4 too */
+  put_attribute (writer, "xmlns",
+                 "http://www.ivoa.net/xml/VOTable/v1.3"); /* the name space of 1.4 too */
   xmlTextWriterStartElement (writer, WORD ("RESOURCE"));
   put_attribute (writer, "type", "results");
   put_facts (writer, facts);
@@ -143,7 +145,8 @@ tf_export_votable (const char *path, const GArray *rows, const GArray *facts, GE
     {
       put_document (writer, rows, facts);
       xmlFreeTextWriter (writer);
-      good = tf_export_save (path, (const char *)xmlBufferContent (buffer), xmlBufferLength (buffer), error);
+      good = tf_export_save (path, (const char *)xmlBufferContent (buffer),
+                             xmlBufferLength (buffer), error);
     }
   else
     tf_export_set_error (error, path, g_strerror (ENOMEM));

@@ -7,7 +7,7 @@
 
 #include "tf-export-private.h"
 
-G_DEFINE_QUARK (tf-exchange-error-quark, tf_exchange_error)
+G_DEFINE_QUARK (tf - exchange - error - quark, tf_exchange_error)
 
 static const TfFormat formats[] = {
   { ".csv", tf_export_csv },
@@ -19,8 +19,10 @@ static const TfFormat formats[] = {
 void
 tf_export_set_error (GError **error, const char *path, const char *reason)
 {
-  g_set_error (error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_WRITE,
-               _ ("%s cannot be written: %s. See that the folder is there, may be written to, and has room"), path, reason);
+  g_set_error (
+      error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_WRITE,
+      _ ("%s cannot be written: %s. See that the folder is there, may be written to, and has room"),
+      path, reason);
 }
 
 gboolean
@@ -40,13 +42,15 @@ tf_column_number (const TfColumn *column, const TfExportRow *row)
 }
 
 GArray *
-tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPtrArray **rows, GError **error)
+tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPtrArray **rows,
+                GError **error)
 {
   TfRowQuery query = { .marks = TRUE, .hints = with_hints };
   GPtrArray *found = tf_ledger_rows (ledger, &query, error);
   if (found == NULL)
     return NULL;
-  g_autoptr (TfDivides) divides = study->divides != NULL ? tf_divides_ref (study->divides) : tf_divides_new (&study->divide);
+  g_autoptr (TfDivides) divides
+      = study->divides != NULL ? tf_divides_ref (study->divides) : tf_divides_new (&study->divide);
   GArray *judged = g_array_sized_new (FALSE, TRUE, sizeof (TfExportRow), found->len);
   for (guint k = 0; k < found->len; k++)
     {
@@ -60,7 +64,8 @@ tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPt
 }
 
 gboolean
-tf_export_write (const char *path, const GArray *rows, const TfStudy *study, const char *source, GError **error)
+tf_export_write (const char *path, const GArray *rows, const TfStudy *study, const char *source,
+                 GError **error)
 {
   for (guint k = 0; k < G_N_ELEMENTS (formats); k++)
     {
@@ -71,7 +76,8 @@ tf_export_write (const char *path, const GArray *rows, const TfStudy *study, con
       return formats[k].write (path, rows, facts, error);
     }
   g_set_error (error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_FORMAT,
-               _ ("%s: the ending of the name says how a table is written, and this one is none of .csv, .vot, .fits, .json"),
+               _ ("%s: the ending of the name says how a table is written, and this one is none of "
+                  ".csv, .vot, .fits, .json"),
                path);
   return FALSE;
 }

@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* Tables out: the flat columns of 6-commands as CSV, VOTable, FITS table and JSON, from one const table of columns (name, unit
- * in FITS and VOUnit spelling, UCD, description, how to get it from a row). Files are written beside the target and renamed. */
+/* Tables out: the flat columns of 6-commands as CSV, VOTable, FITS table and JSON, from one
+ * const table of columns (name, unit in FITS and VOUnit spelling, UCD, description, how to get
+ * it from a row). Files are written beside the target and renamed. */
 
 #include <glib.h>
 
@@ -24,7 +25,7 @@ typedef enum
 {
   TF_COLUMN_TEXT,
   TF_COLUMN_NUMBER,
-  TF_COLUMN_INT,  /* missing value allowed */
+  TF_COLUMN_INT, /* missing value allowed */
   TF_COLUMN_BOOL,
 } TfColumnType;
 
@@ -41,15 +42,18 @@ typedef struct
   const char *name;
   TfColumnType type;
   const char *fits_unit, *vo_unit, *ucd, *description; /* units "" where none */
-  double factor;      /* value in the unit = number * factor; 1 */
-  double (*number) (const TfExportRow *row);       /* NUMBER, INT, BOOL: NaN missing */
-  char *(*text) (const TfExportRow *row);          /* TEXT: (transfer full) "" missing */
+  double factor;                                       /* value in the unit = number * factor; 1 */
+  double (*number) (const TfExportRow *row);           /* NUMBER, INT, BOOL: NaN missing */
+  char *(*text) (const TfExportRow *row);              /* TEXT: (transfer full) "" missing */
 } TfColumn;
 extern const TfColumn tf_columns[]; /* ends with name NULL; order and names as 6-commands */
 
-/** tf_export_rows: (element-type TfExportRow): marks (and hints) judged under the study. @rows keeps the ledger rows alive. */
-GArray *tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPtrArray **rows, GError **error);
+/** tf_export_rows: (element-type TfExportRow): marks (and hints) judged under the study. @rows
+ * keeps the ledger rows alive. */
+GArray *tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints,
+                        GPtrArray **rows, GError **error);
 /** tf_export_write: format by the ending of @path: .csv .vot .fits .json. */
-gboolean tf_export_write (const char *path, const GArray *rows, const TfStudy *study, const char *source, GError **error);
+gboolean tf_export_write (const char *path, const GArray *rows, const TfStudy *study,
+                          const char *source, GError **error);
 
 G_END_DECLS

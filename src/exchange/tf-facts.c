@@ -6,8 +6,8 @@
 #include "tf-export-private.h"
 #include "tf-number.h"
 
-/* What a table says of itself. English in every locale, so that a file does not depend on who wrote it, and without the time of writing, so
- * that equal rows make equal files.
+/* What a table says of itself. English in every locale, so that a file does not depend on who
+ * wrote it, and without the time of writing, so that equal rows make equal files.
  */
 
 enum
@@ -43,15 +43,16 @@ list_values (const GArray *rows, char *(*get) (const TfExportRow *row))
       guint n = GPOINTER_TO_UINT (g_hash_table_lookup (counts, value)) + 1;
       if (n == 1)
         g_ptr_array_add (order, g_strdup (value));
-      g_hash_table_insert (counts, n == 1 ? g_ptr_array_index (order, order->len - 1) : value, GUINT_TO_POINTER (n));
+      g_hash_table_insert (counts, n == 1 ? g_ptr_array_index (order, order->len - 1) : value,
+                           GUINT_TO_POINTER (n));
       g_free (value);
     }
   for (guint k = 0; k < MIN (order->len, LISTED); k++)
     {
       const char *value = g_ptr_array_index (order, k);
       guint n = GPOINTER_TO_UINT (g_hash_table_lookup (counts, value));
-      g_string_append_printf (text, "%s%s (%u row%s)", k > 0 ? "; " : "", *value != '\0' ? value : "not told", n,
-                              n == 1 ? "" : "s");
+      g_string_append_printf (text, "%s%s (%u row%s)", k > 0 ? "; " : "",
+                              *value != '\0' ? value : "not told", n, n == 1 ? "" : "s");
     }
   if (order->len > LISTED)
     g_string_append_printf (text, "; and %u more", order->len - LISTED);
@@ -71,7 +72,8 @@ floor_of (const TfExportRow *row)
 {
   const TfMeasure *m = &row->row->measure;
   if (m->floor_kind != TF_FLOOR_EVEN)
-    return g_strdup ("local, 3 sigma as observed unless the method says otherwise: column floor_gauss");
+    return g_strdup (
+        "local, 3 sigma as observed unless the method says otherwise: column floor_gauss");
   g_autofree char *value = tf_number_dup_form (m->floor_gauss, ".1f", FALSE);
   return g_strdup_printf ("even, %s G", value);
 }
@@ -84,8 +86,9 @@ add_study (GArray *facts, const TfStudy *study)
   g_autofree char *hale = tf_options_dup_canonical (tf_verdict_options, &study->verdict, "hale");
   g_autofree char *divide = tf_options_dup_canonical (tf_divide_options, &study->divide, "cycle");
   add (facts, "study", g_strdup (study->name != NULL ? study->name : "default"));
-  add (facts, "judging", g_strdup_printf ("%s; %s; divides %s", hale, divide,
-                                            study->divides != NULL ? "as a person set them" : "computed"));
+  add (facts, "judging",
+       g_strdup_printf ("%s; %s; divides %s", hale, divide,
+                        study->divides != NULL ? "as a person set them" : "computed"));
 }
 
 GArray *
@@ -100,8 +103,10 @@ tf_facts_new (const GArray *rows, const TfStudy *study, const char *source)
   add (facts, "method", list_values (rows, method_of));
   add (facts, "floor", list_values (rows, floor_of));
   add (facts, "convention",
-       g_strdup ("longitudes west positive; leading is the western pole; axis_tilt_deg positive when the leader is "
-                 "equatorward, in both hemispheres; latitude and hemisphere are those of the poles' midpoint; flux in Mx, "
+       g_strdup ("longitudes west positive; leading is the western pole; axis_tilt_deg positive "
+                 "when the leader is "
+                 "equatorward, in both hemispheres; latitude and hemisphere are those of the "
+                 "poles' midpoint; flux in Mx, "
                  "field in G, area in millionths of the hemisphere"));
   add_study (facts, study);
   add (facts, "source", g_strdup (source != NULL && *source != '\0' ? source : "not told"));

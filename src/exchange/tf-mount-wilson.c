@@ -37,7 +37,8 @@ read_letters (const char *text)
       const char *before = at;
       for (guint k = 0; k < G_N_ELEMENTS (letters) && at == before; k++)
         {
-          const char *form = g_str_has_prefix (at, letters[k].letter) ? letters[k].letter : letters[k].name;
+          const char *form
+              = g_str_has_prefix (at, letters[k].letter) ? letters[k].letter : letters[k].name;
           if (!g_str_has_prefix (at, form))
             continue;
           found |= letters[k].flag;

@@ -8,7 +8,8 @@
 
 #include "tf-sun-private.h"
 
-/* What telescope and detector do to a picture: blur, noise, steps. NaN is "off the disk" before and after. */
+/* What telescope and detector do to a picture: blur, noise, steps. NaN is "off the disk" before
+ * and after. */
 
 static const double FWHM_IN_SIGMA = 2.3548200450309493; /* 2 sqrt (2 ln 2) */
 

@@ -7,10 +7,11 @@
 #include "tf-constants.h"
 #include "tf-sun-private.h"
 
-/* The demo frames: Brindle Head Solar Station, a small invented observatory. One disk passage in October 2013 (cycle 24) with a
- * normal, an anti-Hale and a complex region among ordinary ones; disks on both sides of two minima, with the old cycle near the equator
- * and the new one at high latitudes; a frame from off the Earth's line, an old header, a ground network's header, a continuum
- * companion, a map. Everything is in the tables below.
+/* The demo frames: Brindle Head Solar Station, a small invented observatory. One disk passage
+ * in October 2013 (cycle 24) with a normal, an anti-Hale and a complex region among ordinary
+ * ones; disks on both sides of two minima, with the old cycle near the equator and the new one
+ * at high latitudes; a frame from off the Earth's line, an old header, a ground network's
+ * header, a continuum companion, a map. Everything is in the tables below.
  */
 
 typedef struct
@@ -42,8 +43,9 @@ typedef struct
   const Patch *patches;  /* end with name NULL, or NULL */
 } Sky;
 
-/* -- October 2013: cycle 24, negative leads in the north ---------------------------------------- */
+/* -- October 2013: cycle 24, negative leads in the north -------------------------------------- */
 
+/* clang-format off */
 static const Region autumn_regions[] = {
   { "gannet", "bipole", -4.0, 14.0, 6.4, 6.5, -1, 9.0e21, 1.2, 1.8, 7, 0, 0, 0 },
   { "dunlin", "anti-hale", -22.0, -13.0, 5.6, -8.0, -1, 6.0e21, 1.2, 1.6, 6, 0, 0, 0 },
@@ -71,7 +73,7 @@ static const Patch autumn_patches[] = {
 
 static const Sky autumn = { "2013-10-12T06:00:00Z", 20131012, 420, 4.0e19, autumn_regions, autumn_complex, autumn_patches };
 
-/* -- about the minimum of December 2008: cycle 23 (positive leads in the north) and 24 ------------ */
+/* -- about the minimum of December 2008: cycle 23 (positive leads in the north) and 24 -------- */
 
 static const Region spring_2008[] = {
   { "lapwing", "old cycle", -24.0, 6.5, 5.0, 2.0, 1, 4.5e21, 1.1, 1.5, 5, 0, 0, 0 },
@@ -98,7 +100,7 @@ static const Sky sky_2008_spring = { "2008-05-04T06:00:00Z", 20080504, 360, 3.0e
 static const Sky sky_2008_winter = { "2008-11-03T06:00:00Z", 20081103, 360, 3.0e19, winter_2008, NULL, NULL };
 static const Sky sky_2009_spring = { "2009-05-10T06:00:00Z", 20090510, 360, 3.0e19, spring_2009, NULL, NULL };
 
-/* -- about the minimum of December 2019: cycle 24 and 25 (positive leads in the north) ------------- */
+/* -- about the minimum of December 2019: cycle 24 and 25 (positive leads in the north) -------- */
 
 static const Region summer_2019[] = {
   { "brambling", "old cycle", -18.0, 5.5, 4.8, 2.5, -1, 4.0e21, 1.0, 1.4, 4, 0, 0, 0 },
@@ -116,7 +118,7 @@ static const Region spring_2020[] = {
 static const Sky sky_2019_summer = { "2019-06-15T06:00:00Z", 20190615, 360, 3.0e19, summer_2019, NULL, NULL };
 static const Sky sky_2020_spring = { "2020-05-28T06:00:00Z", 20200528, 360, 3.0e19, spring_2020, NULL, NULL };
 
-/* -- the frames -------------------------------------------------------------------------------- */
+/* -- the frames ------------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -158,6 +160,8 @@ static const Plan plans[] = {
   { &sky_2019_summer, "2019-06-15T06:00:00Z", "brindle-20190615-0600", "south", STATION, TF_STYLE_STANDARD, 0.2, -0.2 },
   { &sky_2020_spring, "2020-05-28T06:00:00Z", "brindle-20200528-0600", "north", STATION, TF_STYLE_STANDARD, -0.3, 0.4 },
 };
+
+/* clang-format on */
 
 static TfBipole
 bipole_of (const Region *region, double l0_deg)
@@ -229,10 +233,12 @@ shot_of (const Plan *plan, TfShot *shot)
 }
 
 static gboolean
-make_frame (const TfSun *sun, const Plan *plan, const char *folder, guint64 seed, const TfWork *work, GError **error)
+make_frame (const TfSun *sun, const Plan *plan, const char *folder, guint64 seed,
+            const TfWork *work, GError **error)
 {
   TfShot shot;
-  g_autofree char *name = g_strconcat (plan->name, ".fits", NULL), *path = g_build_filename (folder, name, NULL);
+  g_autofree char *name = g_strconcat (plan->name, ".fits", NULL),
+                  *path = g_build_filename (folder, name, NULL);
   shot_of (plan, &shot);
   if (plan->rotation != 0)
     return tf_sun_write_map (sun, path, plan->rotation, 360, 180, &shot, seed, error);

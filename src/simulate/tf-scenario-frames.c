@@ -13,29 +13,35 @@
 #include "tf-joy.h"
 #include "tf-sun-private.h"
 
-/* A sun as active as asked, followed through some frames. Latitudes are those expected of the cycle at that date, with a spread of
- * 5 deg; about a minimum a third of the regions belong to the other cycle. Tilts are Joy's with their scatter, leaders Hale's but for
- * the share that is to break it. Sizes and fluxes are invented.
+/* A sun as active as asked, followed through some frames. Latitudes are those expected of the
+ * cycle at that date, with a spread of 5 deg; about a minimum a third of the regions belong to
+ * the other cycle. Tilts are Joy's with their scatter, leaders Hale's but for the share that is
+ * to break it. Sizes and fluxes are invented.
  */
 
-static const char *const style_names[] = { "standard", "turned", "old-pixels", "ground", "tai", NULL };
+static const char *const style_names[]
+    = { "standard", "turned", "old-pixels", "ground", "tai", NULL };
 
 const TfOption tf_simulate_options[] = {
-  { "size", TF_OPTION_INT, "px", 512, 32, 8192, NULL, N_ ("pixels a side"), offsetof (TfSimulateParams, size) },
-  { "n-frames", TF_OPTION_INT, "", 4, 1, 10000, NULL, N_ ("how many frames"), offsetof (TfSimulateParams, n_frames) },
-  { "start-year", TF_OPTION_NUMBER, "", 2013.75, 1976, 2040, NULL, N_ ("time of the first frame, as a decimal year"),
-    offsetof (TfSimulateParams, start_year) },
+  { "size", TF_OPTION_INT, "px", 512, 32, 8192, NULL, N_ ("pixels a side"),
+    offsetof (TfSimulateParams, size) },
+  { "n-frames", TF_OPTION_INT, "", 4, 1, 10000, NULL, N_ ("how many frames"),
+    offsetof (TfSimulateParams, n_frames) },
+  { "start-year", TF_OPTION_NUMBER, "", 2013.75, 1976, 2040, NULL,
+    N_ ("time of the first frame, as a decimal year"), offsetof (TfSimulateParams, start_year) },
   { "cadence-hours", TF_OPTION_NUMBER, "h", 24, 0.01, 1e5, NULL, N_ ("time from frame to frame"),
     offsetof (TfSimulateParams, cadence_hours) },
-  { "n-regions", TF_OPTION_INT, "", 8, 0, 200, NULL, N_ ("regions on the Earth's side in the middle of the time"),
+  { "n-regions", TF_OPTION_INT, "", 8, 0, 200, NULL,
+    N_ ("regions on the Earth's side in the middle of the time"),
     offsetof (TfSimulateParams, n_regions) },
-  { "anti-hale-share", TF_OPTION_NUMBER, "", 0.05, 0, 1, NULL, N_ ("share of regions that break Hale's law"),
-    offsetof (TfSimulateParams, anti_hale_share) },
+  { "anti-hale-share", TF_OPTION_NUMBER, "", 0.05, 0, 1, NULL,
+    N_ ("share of regions that break Hale's law"), offsetof (TfSimulateParams, anti_hale_share) },
   { "noise-gauss", TF_OPTION_NUMBER, "G", 8, 0, 1000, NULL, N_ ("noise of a pixel, one sigma"),
     offsetof (TfSimulateParams, noise_gauss) },
-  { "style", TF_OPTION_CHOICE, "", TF_STYLE_STANDARD, 0, TF_STYLE_TAI, style_names, N_ ("habit of the headers"),
-    offsetof (TfSimulateParams, style) },
-  { "seed", TF_OPTION_INT, "", 1, 0, G_MAXINT, NULL, N_ ("equal seeds give equal bytes"), offsetof (TfSimulateParams, seed) },
+  { "style", TF_OPTION_CHOICE, "", TF_STYLE_STANDARD, 0, TF_STYLE_TAI, style_names,
+    N_ ("habit of the headers"), offsetof (TfSimulateParams, style) },
+  { "seed", TF_OPTION_INT, "", 1, 0, G_MAXINT, NULL, N_ ("equal seeds give equal bytes"),
+    offsetof (TfSimulateParams, seed) },
   { NULL },
 };
 
@@ -45,8 +51,8 @@ tf_simulate_make_folder (const char *folder, GError **error)
   if (g_mkdir_with_parents (folder, 0777) == 0)
     return TRUE;
   g_set_error (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_WRITE,
-               _ ("the folder %s cannot be made: %s. Choose one in a place that you may write to"), folder,
-               g_strerror (errno));
+               _ ("the folder %s cannot be made: %s. Choose one in a place that you may write to"),
+               folder, g_strerror (errno));
   return FALSE;
 }
 
@@ -108,8 +114,10 @@ is_free (const GArray *others, const TfBipole *b)
   for (guint k = 0; k < others->len; k++)
     {
       const TfBipole *o = &g_array_index (others, TfBipole, k);
-      double need = 0.5 * (o->separation_deg + b->separation_deg) + 3.0 * (o->follow_radius_deg + b->follow_radius_deg);
-      if (tf_sphere_distance (o->carrington_lon_deg, o->lat_deg, b->carrington_lon_deg, b->lat_deg) < need)
+      double need = 0.5 * (o->separation_deg + b->separation_deg)
+                    + 3.0 * (o->follow_radius_deg + b->follow_radius_deg);
+      if (tf_sphere_distance (o->carrington_lon_deg, o->lat_deg, b->carrington_lon_deg, b->lat_deg)
+          < need)
         return FALSE;
     }
   return TRUE;
@@ -139,7 +147,8 @@ make_sun (const TfSimulateParams *params, TfTime epoch)
 }
 
 gboolean
-tf_simulate_frames (const char *folder, const TfSimulateParams *params, const TfWork *work, GError **error)
+tf_simulate_frames (const char *folder, const TfSimulateParams *params, const TfWork *work,
+                    GError **error)
 {
   double step = params->cadence_hours * 3600.0;
   TfTime first = tf_time_from_year (params->start_year);
@@ -147,7 +156,8 @@ tf_simulate_frames (const char *folder, const TfSimulateParams *params, const Tf
   if (!tf_simulate_make_folder (folder, error))
     return FALSE;
   first.s = rint (first.s); /* whole seconds */
-  g_autoptr (TfSun) sun = make_sun (params, tf_time_add (first, 0.5 * step * (params->n_frames - 1)));
+  g_autoptr (TfSun) sun
+      = make_sun (params, tf_time_add (first, 0.5 * step * (params->n_frames - 1)));
   tf_shot_init (&shot);
   shot.size = (guint)params->size;
   shot.noise_gauss = params->noise_gauss;
@@ -156,8 +166,8 @@ tf_simulate_frames (const char *folder, const TfSimulateParams *params, const Tf
     {
       g_autofree char *name = g_strdup_printf ("frame-%04d.fits", k + 1);
       g_autofree char *path = g_build_filename (folder, name, NULL);
-      if (!tf_sun_write (sun, path, tf_time_add (first, k * step), &shot, (guint64)params->seed * 100003u + (guint)k, work,
-                         error))
+      if (!tf_sun_write (sun, path, tf_time_add (first, k * step), &shot,
+                         (guint64)params->seed * 100003u + (guint)k, work, error))
         return FALSE;
     }
   return TRUE;

@@ -8,8 +8,9 @@
 #include "tf-constants.h"
 #include "tf-sun-private.h"
 
-/* A Carrington map: longitude 0 to 360 from left to right, sine latitude from -1 to 1 upwards, the radial field. Every column is drawn
- * at its own time, when the Earth's central meridian stood there: the right edge is the oldest.
+/* A Carrington map: longitude 0 to 360 from left to right, sine latitude from -1 to 1 upwards,
+ * the radial field. Every column is drawn at its own time, when the Earth's central meridian
+ * stood there: the right edge is the oldest.
  */
 
 TfTime
@@ -35,7 +36,8 @@ tf_shot_map_geometry (guint width, guint height, TfGeometry *geometry, GError **
   if (width >= 8 && height >= 8 && width <= 16384 && height <= 16384 && tf_geometry_make (geometry))
     return TRUE;
   g_set_error (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_OPTION,
-               _ ("no map of %u by %u pixels can be drawn: each side must be 8 to 16384 pixels"), width, height);
+               _ ("no map of %u by %u pixels can be drawn: each side must be 8 to 16384 pixels"),
+               width, height);
   return FALSE;
 }
 
@@ -50,7 +52,8 @@ add_column (const TfLit *lit, guint n, double lon_deg, guint height, guint s, do
       double reach = acos (CLAMP (lit[k].cos_cut, -1.0, 1.0)), lat = asin (CLAMP (u[2], -1.0, 1.0));
       double low = lat - reach < -TF_PI / 2 ? -1.0 : sin (lat - reach);
       double high = lat + reach > TF_PI / 2 ? 1.0 : sin (lat + reach);
-      int first = MAX (0, (int)floor ((low + 1.0) / step) - 1), last = MIN ((int)height - 1, (int)ceil ((high + 1.0) / step));
+      int first = MAX (0, (int)floor ((low + 1.0) / step) - 1),
+          last = MIN ((int)height - 1, (int)ceil ((high + 1.0) / step));
       double along = u[0] * east + u[1] * west;
       for (int row = first; row <= last; row++)
         for (guint j = 0; j < s; j++)
@@ -63,7 +66,8 @@ add_column (const TfLit *lit, guint n, double lon_deg, guint height, guint s, do
     }
 }
 
-/* Only elements that reach this longitude at all: |sin (lon - lon_e)| cos lat_e of the meridian's great circle. */
+/* Only elements that reach this longitude at all: |sin (lon - lon_e)| cos lat_e of the
+ * meridian's great circle. */
 static guint
 keep_near (TfLit *lit, guint n, double lon_deg)
 {
@@ -79,12 +83,14 @@ keep_near (TfLit *lit, guint n, double lon_deg)
 }
 
 float *
-tf_shoot_map (const TfSun *sun, int rotation, const TfShot *shot, const TfGeometry *geometry, guint64 seed)
+tf_shoot_map (const TfSun *sun, int rotation, const TfShot *shot, const TfGeometry *geometry,
+              guint64 seed)
 {
-  guint width = geometry->width, height = geometry->height, s = shot->supersample == 0 ? 2 : shot->supersample;
+  guint width = geometry->width, height = geometry->height,
+        s = shot->supersample == 0 ? 2 : shot->supersample;
   g_autofree TfLit *lit = g_new (TfLit, tf_sun_get_n_elements (sun) + 1);
   g_autofree double *sum = g_new (double, height);
-  float *pixels = g_new (float, (gsize)width * height);
+  float *pixels = g_new (float, (gsize)width *height);
   for (guint x = 0; x < width; x++)
     {
       memset (sum, 0, height * sizeof *sum);

@@ -7,8 +7,9 @@
 #include "tf-constants.h"
 #include "tf-sun-private.h"
 
-/* Headers in the habits of real ones, with invented names. What every style says alike (common): SIMULATD = T, the unit, what the
- * picture is. Numbers are rounded to a few digits below any use of them, so that a header is the same bytes on every processor.
+/* Headers in the habits of real ones, with invented names. What every style says alike
+ * (common): SIMULATD = T, the unit, what the picture is. Numbers are rounded to a few digits
+ * below any use of them, so that a header is the same bytes on every processor.
  */
 
 typedef void (*StyleFunc) (TfHeader *header, const TfShot *shot, const TfGeometry *g, TfTime time);
@@ -41,11 +42,13 @@ calendar_in (TfTime time, TfTimeScale scale)
   /* Rounded to a millisecond first: 59.9996 s must not print as 60.000. */
   time.s = rint (time.s * 1000.0) / 1000.0;
   tf_time_calendar (time, &c.year, &c.month, &c.day, &c.hour, &c.minute, &c.second);
-  /* A clock that knows no leap seconds: set by what it should show, again where a leap second lies between. */
+  /* A clock that knows no leap seconds: set by what it should show, again where a leap second
+   * lies between. */
   TfTime shifted = time;
   for (int round = 0; round < 3 && scale != TF_SCALE_UTC; round++)
     {
-      double shown = tf_time_from_calendar (c.year, c.month, c.day, c.hour, c.minute, c.second, scale).s;
+      double shown
+          = tf_time_from_calendar (c.year, c.month, c.day, c.hour, c.minute, c.second, scale).s;
       shifted = tf_time_add (shifted, rint ((time.s - shown) * 1000.0) / 1000.0);
       TfTime inside = tf_time_add (shifted, 1e-5);
       tf_time_calendar (inside, &c.year, &c.month, &c.day, &c.hour, &c.minute, &c.second);
@@ -58,8 +61,8 @@ tai_text (TfTime time)
 {
   Calendar c = calendar_in (time, TF_SCALE_TAI);
   int ms = (int)(c.second * 1000.0 + 0.5);
-  return g_strdup_printf ("%04d.%02d.%02d_%02d:%02d:%02d.%03d_TAI", c.year, c.month, c.day, c.hour, c.minute, ms / 1000,
-                          ms % 1000);
+  return g_strdup_printf ("%04d.%02d.%02d_%02d:%02d:%02d.%03d_TAI", c.year, c.month, c.day, c.hour,
+                          c.minute, ms / 1000, ms % 1000);
 }
 
 /* DATE-OBS and its kin by the standard: UTC is the default, no Z. */
@@ -73,7 +76,7 @@ iso_text (TfTime time)
   return text;
 }
 
-/* -- what every style has -------------------------------------------------------------------- */
+/* -- what every style has --------------------------------------------------------------------- */
 
 static void
 set_common (TfHeader *header, const TfShot *shot, guint64 seed)
@@ -90,7 +93,8 @@ set_common (TfHeader *header, const TfShot *shot, guint64 seed)
 static void
 set_content (TfHeader *header, const TfShot *shot)
 {
-  tf_header_set (header, "CONTENT", shot->intensity ? "continuum intensity" : "line-of-sight magnetic field");
+  tf_header_set (header, "CONTENT",
+                 shot->intensity ? "continuum intensity" : "line-of-sight magnetic field");
 }
 
 static void
@@ -135,7 +139,7 @@ set_observer (TfHeader *header, const TfGeometry *g)
   set_rounded (header, "RSUN_OBS", tf_geometry_radius_arcsec (g), 8);
 }
 
-/* -- styles ---------------------------------------------------------------------------------- */
+/* -- styles ----------------------------------------------------------------------------------- */
 
 /* CROTA2 counts clockwise what the north angle counts counter-clockwise. */
 static double
@@ -209,7 +213,8 @@ style_ground (TfHeader *header, const TfShot *shot, const TfGeometry *g, TfTime 
   double radius = tf_geometry_disk_radius (g);
   tf_header_set (header, "IMTYPE", shot->intensity ? "INTENSITY" : "MAGNETIC");
   set_text (header, "DATE-OBS", g_strdup_printf ("%04d/%02d/%02d", c.year, c.month, c.day));
-  set_text (header, "TIME-OBS", g_strdup_printf ("%02d:%02d:%02d.%03d", c.hour, c.minute, ms / 1000, ms % 1000));
+  set_text (header, "TIME-OBS",
+            g_strdup_printf ("%02d:%02d:%02d.%03d", c.hour, c.minute, ms / 1000, ms % 1000));
   tf_header_set (header, "WCSNAME", "Heliocentric-cartesian (approximate)");
   tf_header_set (header, "CTYPE1", "BRINDLEX");
   tf_header_set (header, "CTYPE2", "BRINDLEY");
@@ -255,7 +260,8 @@ tf_style_check (const TfShot *shot, GError **error)
   if (known && fabs (shot->north_angle_deg) <= 0.0 && shot->observer.source == TF_OBSERVER_UNKNOWN)
     return TRUE;
   g_set_error (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_OPTION,
-               _ ("a header of style “%s” can only tell of a frame with north up, taken from the Earth; choose “standard”"),
+               _ ("a header of style “%s” can only tell of a frame with north up, taken from the "
+                  "Earth; choose “standard”"),
                known ? styles[shot->style].name : "?");
   return FALSE;
 }

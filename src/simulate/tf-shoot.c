@@ -8,9 +8,10 @@
 #include "tf-constants.h"
 #include "tf-sun-private.h"
 
-/* From a sun to a picture of its disk. A pixel is the mean over supersample^2 points, those on the disk alone; it has a value
- * when its middle is on the disk. Elements are added up only inside the box of pixels that holds their disc of 5 sigma, and bands
- * of rows are apart, so that the result is the same for any number of threads.
+/* From a sun to a picture of its disk. A pixel is the mean over supersample^2 points, those on
+ * the disk alone; it has a value when its middle is on the disk. Elements are added up only
+ * inside the box of pixels that holds their disc of 5 sigma, and bands of rows are apart, so
+ * that the result is the same for any number of threads.
  */
 
 void
@@ -26,7 +27,7 @@ tf_shot_init (TfShot *shot)
   };
 }
 
-/* -- geometry -------------------------------------------------------------------------------- */
+/* -- geometry --------------------------------------------------------------------------------- */
 
 static TfObserver
 place_observer (const TfShot *shot, TfTime time)
@@ -35,7 +36,8 @@ place_observer (const TfShot *shot, TfTime time)
   if (observer.source == TF_OBSERVER_UNKNOWN)
     return tf_observer_earth (time);
   if (isnan (observer.carrington_lon_deg))
-    observer.carrington_lon_deg = tf_wrap_360 (tf_earth_l0 (time, TF_L0_IMAGE) + observer.stonyhurst_lon_deg);
+    observer.carrington_lon_deg
+        = tf_wrap_360 (tf_earth_l0 (time, TF_L0_IMAGE) + observer.stonyhurst_lon_deg);
   return observer;
 }
 
@@ -52,17 +54,19 @@ tf_shot_geometry (const TfShot *shot, TfTime time, TfGeometry *geometry, GError 
   if (shot->style == TF_STYLE_TURNED)
     turn += 179.93;
   if (shot->size >= 8 && shot->size <= 16384
-      && tf_geometry_make_disk (geometry, shot->size, shot->size, middle + shot->centre_dx, middle + shot->centre_dy,
-                                scale, tf_wrap_180 (turn), &observer, TF_RADIUS_MM))
+      && tf_geometry_make_disk (geometry, shot->size, shot->size, middle + shot->centre_dx,
+                                middle + shot->centre_dy, scale, tf_wrap_180 (turn), &observer,
+                                TF_RADIUS_MM))
     return TRUE;
   g_set_error (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_OPTION,
-               _ ("no picture of %u pixels a side can be drawn from %.4f au: the side must be 8 to 16384 pixels and the "
+               _ ("no picture of %u pixels a side can be drawn from %.4f au: the side must be 8 to "
+                  "16384 pixels and the "
                   "observer outside the Sun"),
                shot->size, observer.distance_m / TF_AU_M);
   return FALSE;
 }
 
-/* -- boxes ----------------------------------------------------------------------------------- */
+/* -- boxes ------------------------------------------------------------------------------------ */
 
 typedef struct
 {
@@ -82,7 +86,8 @@ box_add (Box *box, const TfGeometry *g, const double unit[3])
   box->y1 = MAX (box->y1, (int)ceil (y));
 }
 
-/* Points of two circles within the element's disc and its middle, with a margin for what lies between them. */
+/* Points of two circles within the element's disc and its middle, with a margin for what lies
+ * between them. */
 static Box
 lit_box (const TfLit *lit, const TfGeometry *g)
 {
@@ -99,7 +104,8 @@ lit_box (const TfLit *lit, const TfGeometry *g)
       {
         double at[3], angle = 2.0 * TF_PI * k / AROUND, r = 0.5 * ring * reach;
         for (int j = 0; j < 3; j++)
-          at[j] = cos (r) * lit->unit[j] + sin (r) * (cos (angle) * west[j] + sin (angle) * north[j]);
+          at[j]
+              = cos (r) * lit->unit[j] + sin (r) * (cos (angle) * west[j] + sin (angle) * north[j]);
         box_add (&box, g, at);
       }
   if (box.x1 < box.x0)
@@ -112,7 +118,7 @@ lit_box (const TfLit *lit, const TfGeometry *g)
   return box;
 }
 
-/* -- rows ------------------------------------------------------------------------------------ */
+/* -- rows ------------------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -170,7 +176,8 @@ add_lit (const Shoot *shoot, guint y, Line *line)
     }
 }
 
-/* Limb darkening 1 - 0.6 (1 - mu); a field of 900 G takes away 0.6 (1 - 1/e) of the light: invented, spots to look at. */
+/* Limb darkening 1 - 0.6 (1 - mu); a field of 900 G takes away 0.6 (1 - 1/e) of the light:
+ * invented, spots to look at. */
 static double
 brightness (double field, double mu)
 {
@@ -222,14 +229,17 @@ shoot_band (guint band, guint first, guint n, guint worker, gpointer data)
 }
 
 float *
-tf_shoot_disk (const TfSun *sun, TfTime time, const TfShot *shot, const TfGeometry *geometry, guint64 seed,
-               const TfWork *work, GError **error)
+tf_shoot_disk (const TfSun *sun, TfTime time, const TfShot *shot, const TfGeometry *geometry,
+               guint64 seed, const TfWork *work, GError **error)
 {
   guint n_elements = tf_sun_get_n_elements (sun) + 1;
   g_autofree TfLit *lit = g_new (TfLit, n_elements);
   g_autofree Box *boxes = g_new (Box, n_elements);
   gsize n = (gsize)geometry->width * geometry->height;
-  Shoot shoot = { .geometry = geometry, .lit = lit, .boxes = boxes, .intensity = shot->intensity,
+  Shoot shoot = { .geometry = geometry,
+                  .lit = lit,
+                  .boxes = boxes,
+                  .intensity = shot->intensity,
                   .supersample = shot->supersample == 0 ? 2 : shot->supersample };
   shoot.n_lit = tf_sun_light (sun, time, lit);
   for (guint k = 0; k < shoot.n_lit; k++)
@@ -238,7 +248,8 @@ tf_shoot_disk (const TfSun *sun, TfTime time, const TfShot *shot, const TfGeomet
   if (!tf_bands_run (work, geometry->height, shoot_band, &shoot))
     {
       g_free (shoot.pixels);
-      g_set_error_literal (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_CANCELLED, _ ("stopped before the frame was drawn"));
+      g_set_error_literal (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_CANCELLED,
+                           _ ("stopped before the frame was drawn"));
       return NULL;
     }
   tf_detector_blur (shoot.pixels, geometry->width, geometry->height,
@@ -247,10 +258,11 @@ tf_shoot_disk (const TfSun *sun, TfTime time, const TfShot *shot, const TfGeomet
   return shoot.pixels;
 }
 
-/* -- a frame, a file ------------------------------------------------------------------------- */
+/* -- a frame, a file -------------------------------------------------------------------------- */
 
 TfFrame *
-tf_sun_shoot (const TfSun *sun, TfTime time, const TfShot *shot, guint64 seed, const TfWork *work, GError **error)
+tf_sun_shoot (const TfSun *sun, TfTime time, const TfShot *shot, guint64 seed, const TfWork *work,
+              GError **error)
 {
   TfGeometry geometry;
   g_return_val_if_fail (!shot->intensity, NULL);
@@ -267,19 +279,23 @@ tf_sun_shoot (const TfSun *sun, TfTime time, const TfShot *shot, guint64 seed, c
 }
 
 static gboolean
-write_frame (const char *path, const TfHeader *header, const float *pixels, const TfGeometry *geometry,
-             const TfShot *shot, GError **error)
+write_frame (const char *path, const TfHeader *header, const float *pixels,
+             const TfGeometry *geometry, const TfShot *shot, GError **error)
 {
   TfFrameWrite how = { .bitpix = -32, .no_date = TRUE };
   if (shot->quantum_gauss > 0.0)
-    how = (TfFrameWrite){ .bitpix = 16, .bscale = shot->quantum_gauss, .blank = -32768, .has_blank = TRUE,
-                          .compress = TRUE, .no_date = TRUE };
+    how = (TfFrameWrite){ .bitpix = 16,
+                          .bscale = shot->quantum_gauss,
+                          .blank = -32768,
+                          .has_blank = TRUE,
+                          .compress = TRUE,
+                          .no_date = TRUE };
   return tf_frame_write (path, header, pixels, geometry->width, geometry->height, &how, error);
 }
 
 gboolean
-tf_sun_write (const TfSun *sun, const char *path, TfTime time, const TfShot *shot, guint64 seed, const TfWork *work,
-              GError **error)
+tf_sun_write (const TfSun *sun, const char *path, TfTime time, const TfShot *shot, guint64 seed,
+              const TfWork *work, GError **error)
 {
   TfGeometry geometry;
   if (!tf_shot_geometry (shot, time, &geometry, error))
@@ -291,8 +307,8 @@ tf_sun_write (const TfSun *sun, const char *path, TfTime time, const TfShot *sho
 }
 
 TfFrame *
-tf_sun_shoot_map (const TfSun *sun, int rotation, guint width, guint height, const TfShot *shot, guint64 seed,
-                  GError **error)
+tf_sun_shoot_map (const TfSun *sun, int rotation, guint width, guint height, const TfShot *shot,
+                  guint64 seed, GError **error)
 {
   TfGeometry geometry;
   if (!tf_shot_map_geometry (width, height, &geometry, error))
@@ -305,8 +321,8 @@ tf_sun_shoot_map (const TfSun *sun, int rotation, guint width, guint height, con
 }
 
 gboolean
-tf_sun_write_map (const TfSun *sun, const char *path, int rotation, guint width, guint height, const TfShot *shot,
-                  guint64 seed, GError **error)
+tf_sun_write_map (const TfSun *sun, const char *path, int rotation, guint width, guint height,
+                  const TfShot *shot, guint64 seed, GError **error)
 {
   TfGeometry geometry;
   if (!tf_shot_map_geometry (width, height, &geometry, error))

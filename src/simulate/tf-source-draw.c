@@ -6,10 +6,11 @@
 #include "tf-constants.h"
 #include "tf-sun-private.h"
 
-/* Where opposite polarities of one source overlap they cancel, and the centroids of what is left stand farther apart than
- * the middles that were asked for. What is left is found here by adding up the source's own field on an equal-area grid
- * (Lambert's azimuthal projection about the source), far finer than any pixel. Midpoint sums of Gaussians at a quarter of
- * their sigma are good to 1e-6 and better.
+/* Where opposite polarities of one source overlap they cancel, and the centroids of what is
+ * left stand farther apart than the middles that were asked for. What is left is found here by
+ * adding up the source's own field on an equal-area grid (Lambert's azimuthal projection about
+ * the source), far finer than any pixel. Midpoint sums of Gaussians at a quarter of their sigma
+ * are good to 1e-6 and better.
  */
 
 typedef struct

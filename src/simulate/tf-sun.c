@@ -10,8 +10,8 @@
 #include "tf-rotation.h"
 #include "tf-sun-private.h"
 
-/* A sun that is only added to: sources, and the elements they are drawn by. The random numbers of fragments and
- * network come from one generator in the order in which things are added.
+/* A sun that is only added to: sources, and the elements they are drawn by. The random numbers
+ * of fragments and network come from one generator in the order in which things are added.
  */
 
 struct _TfSun
@@ -28,11 +28,12 @@ enum
   LAW = 0, /* Snodgrass & Ulrich 1990, magnetic: the default law of tf-rotation.h */
 };
 
-static const double FRAGMENT_SIGMA = 0.45; /* of the pole's: pieces are told apart, the whole stays as wide */
+static const double FRAGMENT_SIGMA
+    = 0.45; /* of the pole's: pieces are told apart, the whole stays as wide */
 static const double NETWORK_SIGMA_DEG = 0.4;
-static const double SPREAD_MAX = 2.2;      /* fragments lie within so many sigma of their pole */
+static const double SPREAD_MAX = 2.2; /* fragments lie within so many sigma of their pole */
 
-G_DEFINE_QUARK (tf-simulate-error-quark, tf_simulate_error)
+G_DEFINE_QUARK (tf - simulate - error - quark, tf_simulate_error)
 
 static void
 clear_source (gpointer data)
@@ -97,7 +98,7 @@ tf_sun_get_n_elements (const TfSun *sun)
   return sun->elements->len;
 }
 
-/* -- elements -------------------------------------------------------------------------------- */
+/* -- elements --------------------------------------------------------------------------------- */
 
 static void
 add_element (TfSun *sun, TfSource *source, const double unit[3], double sigma, double flux_mx)
@@ -133,8 +134,9 @@ typedef struct
   double x, y, weight;
 } Piece;
 
-/* Moves the pieces so that the weighted mean of their directions is the pole's middle. A piece at (x, y) of the tangent plane
- * has the direction (x, y, 1) / sqrt (1 + x^2 + y^2); moving all by the mean is a contraction, so few rounds do. */
+/* Moves the pieces so that the weighted mean of their directions is the pole's middle. A piece
+ * at (x, y) of the tangent plane has the direction (x, y, 1) / sqrt (1 + x^2 + y^2); moving all
+ * by the mean is a contraction, so few rounds do. */
 static void
 centre_pieces (Piece *pieces, guint n)
 {
@@ -204,12 +206,13 @@ add_pole (TfSun *sun, TfSource *source, const TfPoleTruth *pole, guint n)
     }
 }
 
-/* -- sources --------------------------------------------------------------------------------- */
+/* -- sources ---------------------------------------------------------------------------------- */
 
 static TfSource
 source_new (const TfSun *sun, const char *name, const char *what)
 {
-  return (TfSource){ .name = g_strdup (name), .what = g_strdup (what), .first = sun->elements->len };
+  return (
+      TfSource){ .name = g_strdup (name), .what = g_strdup (what), .first = sun->elements->len };
 }
 
 static void
@@ -219,7 +222,8 @@ source_add (TfSun *sun, TfSource *source)
   g_array_append_val (sun->sources, *source);
 }
 
-/* Poles so that the planar tilt (cosine of the mean latitude) and the great-circle separation are exactly those asked for. */
+/* Poles so that the planar tilt (cosine of the mean latitude) and the great-circle separation
+ * are exactly those asked for. */
 static void
 place_poles (const TfBipole *b, TfPoleTruth *lead, TfPoleTruth *follow)
 {
@@ -233,7 +237,8 @@ place_poles (const TfBipole *b, TfPoleTruth *lead, TfPoleTruth *follow)
       lead->lon_deg = b->carrington_lon_deg + dlon;
       follow->lat_deg = b->lat_deg - dlat;
       follow->lon_deg = b->carrington_lon_deg - dlon;
-      double got = tf_sphere_distance (lead->lon_deg, lead->lat_deg, follow->lon_deg, follow->lat_deg);
+      double got
+          = tf_sphere_distance (lead->lon_deg, lead->lat_deg, follow->lon_deg, follow->lat_deg);
       if (got > 0.0)
         apart *= b->separation_deg / got;
     }
@@ -305,7 +310,8 @@ tf_sun_add_network (TfSun *sun, guint n, double flux_mx)
     {
       double lon = 360.0 * gsl_rng_uniform (sun->rng);
       double lat = asin (2.0 * gsl_rng_uniform (sun->rng) - 1.0) / TF_DEG;
-      /* Every second element takes the flux of the one before with the other sign: balanced as a whole. */
+      /* Every second element takes the flux of the one before with the other sign: balanced as
+       * a whole. */
       flux = k % 2 == 0 ? gsl_ran_exponential (sun->rng, flux_mx) : -flux;
       TfSource source = source_new (sun, NULL, "network");
       source.lat_deg = lat;
@@ -315,7 +321,7 @@ tf_sun_add_network (TfSun *sun, guint n, double flux_mx)
     }
 }
 
-/* -- at a time ------------------------------------------------------------------------------- */
+/* -- at a time -------------------------------------------------------------------------------- */
 
 double
 tf_source_growth (const TfSource *source, double seconds)
@@ -357,7 +363,8 @@ tf_sun_light (const TfSun *sun, TfTime time, TfLit *lit)
         {
           const TfElement *e = &g_array_index (sun->elements, TfElement, source->first + j);
           lit[n++] = (TfLit){
-            .unit = { c * e->unit[0] - s * e->unit[1], s * e->unit[0] + c * e->unit[1], e->unit[2] },
+            .unit
+            = { c * e->unit[0] - s * e->unit[1], s * e->unit[0] + c * e->unit[1], e->unit[2] },
             .peak_gauss = tf_element_peak (e->flux_mx * growth, e->sigma),
             .cos_cut = 1.0 - fmin (2.0, TF_ELEMENT_CUT * e->sigma * e->sigma),
             .inverse = 1.0 / (e->sigma * e->sigma),
@@ -389,7 +396,8 @@ tf_sun_field (const TfSun *sun, TfTime time, const double unit[3])
 }
 
 gboolean
-tf_sun_flux (const TfSun *sun, const char *name, TfTime time, double *positive_mx, double *negative_mx)
+tf_sun_flux (const TfSun *sun, const char *name, TfTime time, double *positive_mx,
+             double *negative_mx)
 {
   for (guint k = 0; k < sun->sources->len; k++)
     {
@@ -400,7 +408,8 @@ tf_sun_flux (const TfSun *sun, const char *name, TfTime time, double *positive_m
       *positive_mx = *negative_mx = 0.0;
       for (guint j = 0; j < source->n; j++)
         {
-          double flux = g_array_index (sun->elements, TfElement, source->first + j).flux_mx * growth;
+          double flux
+              = g_array_index (sun->elements, TfElement, source->first + j).flux_mx * growth;
           *(flux > 0.0 ? positive_mx : negative_mx) += fabs (flux);
         }
       return TRUE;

@@ -10,10 +10,11 @@
 #include "tf-number.h"
 #include "tf-sun-private.h"
 
-/* What is true of every source at the time of a frame. "poles" are as they were asked for; "drawn" is what is left where a source's
- * own opposite polarities overlap, and is what a perfect measurement of the source alone would find. Angles in degrees to
- * 1e-6, flux in Mx to nine digits, so that the text is the same on every processor. Tilts are planar, with the cosine of the mean
- * latitude; the hemisphere is that of the midpoint.
+/* What is true of every source at the time of a frame. "poles" are as they were asked for;
+ * "drawn" is what is left where a source's own opposite polarities overlap, and is what a
+ * perfect measurement of the source alone would find. Angles in degrees to 1e-6, flux in Mx to
+ * nine digits, so that the text is the same on every processor. Tilts are planar, with the
+ * cosine of the mean latitude; the hemisphere is that of the midpoint.
  */
 
 typedef struct
@@ -128,8 +129,10 @@ put_drawn (const Scene *scene, const TfSource *source, double growth, double car
     }
   if (drawn->flux_mx[0] > 0.0 && drawn->flux_mx[1] > 0.0)
     {
-      int west = tf_wrap_180 (drawn->lon_deg[0] - drawn->lon_deg[1]) >= 0.0 ? 0 : 1, east = 1 - west;
-      Axis axis = axis_of (drawn->lon_deg[west], drawn->lat_deg[west], drawn->lon_deg[east], drawn->lat_deg[east]);
+      int west = tf_wrap_180 (drawn->lon_deg[0] - drawn->lon_deg[1]) >= 0.0 ? 0 : 1,
+          east = 1 - west;
+      Axis axis = axis_of (drawn->lon_deg[west], drawn->lat_deg[west], drawn->lon_deg[east],
+                           drawn->lat_deg[east]);
       tf_json_int (b, "leading_polarity", west == 0 ? 1 : -1);
       put_axis (b, &axis);
     }
@@ -239,8 +242,8 @@ put_frame (JsonBuilder *b, const TfShot *shot, const TfGeometry *g, int rotation
 }
 
 static void
-build (const TfSun *sun, const char *file, TfTime time, int rotation, const TfShot *shot, const TfGeometry *geometry,
-       guint64 seed, JsonBuilder *b)
+build (const TfSun *sun, const char *file, TfTime time, int rotation, const TfShot *shot,
+       const TfGeometry *geometry, guint64 seed, JsonBuilder *b)
 {
   json_builder_begin_object (b);
   tf_json_bool (b, "simulated", TRUE);
@@ -294,7 +297,8 @@ tf_truth_write (const TfSun *sun, const char *path, TfTime time, int rotation, c
   if (g_file_set_contents (beside, text, -1, &reason))
     return TRUE;
   g_set_error (error, TF_SIMULATE_ERROR, TF_SIMULATE_ERROR_WRITE,
-               _ ("the truth cannot be written to %s: %s. See that the folder may be written to and has room"), beside,
-               reason->message);
+               _ ("the truth cannot be written to %s: %s. See that the folder may be written to "
+                  "and has room"),
+               beside, reason->message);
   return FALSE;
 }

@@ -14,11 +14,16 @@
 
 /* The names that other people's scripts rely on, in their order. */
 static const char *const names
-    = "region passage mark origin label frame frame_checksum method program_version field_used size time time_source kind "
-      "instrument scale person vantage leading_lat_deg leading_carrington_lon_deg following_lat_deg "
-      "following_carrington_lon_deg lat_deg cmd_deg stonyhurst_lon_deg carrington_lon_deg mu axis_bearing_deg axis_tilt_deg "
-      "polarity_tilt_deg tilt_sigma_deg separation_deg separation_sigma_deg separation_mm compactness pieces "
-      "leading_polarity leading_sure flux_unsigned_mx flux_positive_mx flux_negative_mx imbalance magnetic_area_msh cycle "
+    = "region passage mark origin label frame frame_checksum method program_version field_used "
+      "size time time_source kind "
+      "instrument scale person vantage leading_lat_deg leading_carrington_lon_deg "
+      "following_lat_deg "
+      "following_carrington_lon_deg lat_deg cmd_deg stonyhurst_lon_deg carrington_lon_deg mu "
+      "axis_bearing_deg axis_tilt_deg "
+      "polarity_tilt_deg tilt_sigma_deg separation_deg separation_sigma_deg separation_mm "
+      "compactness pieces "
+      "leading_polarity leading_sure flux_unsigned_mx flux_positive_mx flux_negative_mx imbalance "
+      "magnetic_area_msh cycle "
       "cycle_sure hale hale_reason class axial_dipole_gauss floor_gauss floor_kind cautions";
 
 static char *
@@ -29,7 +34,8 @@ write_out (const char *ending, gsize *n)
   g_autoptr (TfStudy) study = tf_study_new_default ();
   g_autoptr (GError) error = NULL;
   g_autofree char *folder = g_dir_make_tmp ("tf-exchange-XXXXXX", NULL);
-  g_autofree char *path = g_build_filename (folder, "out", NULL), *whole = g_strconcat (path, ending, NULL);
+  g_autofree char *path = g_build_filename (folder, "out", NULL),
+                  *whole = g_strconcat (path, ending, NULL);
   char *text = NULL;
   g_assert_true (tf_export_write (whole, rows, study, "tests/exchange", &error));
   g_assert_no_error (error);
@@ -132,8 +138,10 @@ check_csv (const char *text)
   g_assert_cmpstr (cell (lines, 2, "label"), ==, "two\r\nlines, <and> & more");
   g_assert_cmpstr (cell (lines, 2, "class_delta"), ==, "true");
   g_assert_cmpstr (cell (lines, 2, "instrument"), ==, " blanks about ");
-  static const char *const missing[] = { "region", "scale", "leading_lat_deg", "axis_tilt_deg", "polarity_tilt_deg",
-                                         "tilt_sigma_deg", "separation_mm", "cycle", "cycle_sure", "class_delta" };
+  static const char *const missing[] = {
+    "region",         "scale",         "leading_lat_deg", "axis_tilt_deg", "polarity_tilt_deg",
+    "tilt_sigma_deg", "separation_mm", "cycle",           "cycle_sure",    "class_delta"
+  };
   for (guint k = 0; k < G_N_ELEMENTS (missing); k++)
     g_assert_cmpstr (cell (lines, 1, missing[k]), ==, "");
   g_assert_cmpstr (cell (lines, 3, "time"), ==, "");
@@ -145,25 +153,29 @@ static void
 test_csv (void)
 {
   g_autofree char *text = write_out (".csv", NULL);
-  static const char *const facts[] = { "# program: Tiltfield ", "# method: ", "# floor: even, 48.2 G (3 rows)", "# convention: ",
-                                       "# source: tests/exchange", "# study: ", "# rows: 4, of which hints 1" };
+  static const char *const facts[] = {
+    "# program: Tiltfield ",    "# method: ", "# floor: even, 48.2 G (3 rows)", "# convention: ",
+    "# source: tests/exchange", "# study: ",  "# rows: 4, of which hints 1"
+  };
   for (guint k = 0; k < G_N_ELEMENTS (facts); k++)
     if (strstr (text, facts[k]) == NULL)
       g_error ("no line \"%s\"", facts[k]);
   check_csv (text);
 }
 
-/* A locale with a decimal comma, made with localedef in a folder of its own. FALSE where that cannot be. */
+/* A locale with a decimal comma, made with localedef in a folder of its own. FALSE where that
+ * cannot be. */
 static gboolean
 use_comma_locale (const char *folder)
 {
   g_autofree char *made = g_build_filename (folder, "de_DE.UTF-8", NULL);
   const char *words[] = { "localedef", "-i", "de_DE", "-f", "UTF-8", made, NULL };
-  if (!g_spawn_sync (NULL, (char **)words, NULL, G_SPAWN_SEARCH_PATH | G_SPAWN_STDERR_TO_DEV_NULL, NULL, NULL, NULL, NULL,
-                     NULL, NULL))
+  if (!g_spawn_sync (NULL, (char **)words, NULL, G_SPAWN_SEARCH_PATH | G_SPAWN_STDERR_TO_DEV_NULL,
+                     NULL, NULL, NULL, NULL, NULL, NULL))
     return FALSE;
   g_setenv ("LOCPATH", folder, TRUE);
-  return setlocale (LC_ALL, "de_DE.UTF-8") != NULL && strcmp (localeconv ()->decimal_point, ",") == 0;
+  return setlocale (LC_ALL, "de_DE.UTF-8") != NULL
+         && strcmp (localeconv ()->decimal_point, ",") == 0;
 }
 
 static void
@@ -186,7 +198,8 @@ static void
 test_same_in_any_locale (void)
 {
   static const char *const endings[] = { ".csv", ".vot", ".json", ".fits" };
-  g_autofree char *old = g_strdup (setlocale (LC_ALL, NULL)), *folder = g_dir_make_tmp ("tf-locale-XXXXXX", NULL);
+  g_autofree char *old = g_strdup (setlocale (LC_ALL, NULL)),
+                  *folder = g_dir_make_tmp ("tf-locale-XXXXXX", NULL);
   char *plain[4], *comma[4];
   gsize n_plain[4], n_comma[4];
   for (guint k = 0; k < 4; k++)
@@ -216,7 +229,8 @@ test_json (void)
   g_assert_no_error (error);
   JsonArray *rows = tf_json_member_array (json_node_get_object (root), "rows");
   g_assert_cmpuint (json_array_get_length (rows), ==, 4);
-  JsonObject *full = json_array_get_object_element (rows, 0), *hint = json_array_get_object_element (rows, 1);
+  JsonObject *full = json_array_get_object_element (rows, 0),
+             *hint = json_array_get_object_element (rows, 1);
   for (const TfColumn *c = tf_columns; c->name != NULL; c++)
     {
       g_assert_true (json_object_has_member (full, c->name));
@@ -286,7 +300,8 @@ test_mount_wilson (void)
   };
   for (guint k = 0; k < G_N_ELEMENTS (rows); k++)
     {
-      g_autofree char *ascii = tf_mount_wilson_dup_ascii (rows[k].text), *base = tf_mount_wilson_dup_base (rows[k].text);
+      g_autofree char *ascii = tf_mount_wilson_dup_ascii (rows[k].text),
+                      *base = tf_mount_wilson_dup_base (rows[k].text);
       g_assert_cmpstr (ascii, ==, rows[k].ascii);
       g_assert_cmpstr (base, ==, rows[k].base);
       g_assert_cmpint (tf_mount_wilson_delta (rows[k].text), ==, rows[k].delta);
@@ -296,7 +311,8 @@ test_mount_wilson (void)
 int
 main (int argc, char **argv)
 {
-  g_test_init (&argc, &argv, G_TEST_OPTION_ISOLATE_DIRS, NULL); /* ledgers keep a state beside the user's files */
+  g_test_init (&argc, &argv, G_TEST_OPTION_ISOLATE_DIRS,
+               NULL); /* ledgers keep a state beside the user's files */
   g_test_add_func ("/exchange/columns/every-name-stands-in-its-place-with-its-unit", test_names);
   g_test_add_func ("/exchange/csv/values-missing-ones-and-quotes-are-read-back", test_csv);
   g_test_add_func ("/exchange/json/every-column-is-there-and-missing-is-null", test_json);

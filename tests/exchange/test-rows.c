@@ -27,9 +27,14 @@ keep_first (TfLedger *ledger, gint64 frame, GError **error)
   g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &query, error);
   g_assert_no_error (*error);
   const TfRow *hint = g_ptr_array_index (rows, 0);
-  TfMarkDeed deed = { .frame = frame, .person = tf_ledger_person (ledger, "north", error), .hint = hint->mark,
-                      .origin = TF_MARK_KEPT, .outline = hint->outline, .measure = &hint->measure,
-                      .method = "flux-centroid/1 kept", .label = "gannet" };
+  TfMarkDeed deed = { .frame = frame,
+                      .person = tf_ledger_person (ledger, "north", error),
+                      .hint = hint->mark,
+                      .origin = TF_MARK_KEPT,
+                      .outline = hint->outline,
+                      .measure = &hint->measure,
+                      .method = "flux-centroid/1 kept",
+                      .label = "gannet" };
   g_assert_cmpint (tf_ledger_keep (ledger, &deed, error), >, 0);
   g_assert_no_error (*error);
 }
@@ -53,7 +58,8 @@ set_up (Fixture *f, gconstpointer data)
   f->n_hints = hints->len;
   f->ledger = tf_ledger_create (f->path, 'T', &error);
   g_assert_no_error (error);
-  gint64 id = tf_ledger_add_frame (f->ledger, file, "aa", 2, 1, tf_frame_get_info (frame), 8.0, &error);
+  gint64 id
+      = tf_ledger_add_frame (f->ledger, file, "aa", 2, 1, tf_frame_get_info (frame), 8.0, &error);
   g_assert_no_error (error);
   g_assert_true (tf_ledger_add_hints (f->ledger, id, "rule/1", hints, "flux-centroid/1", &error));
   keep_first (f->ledger, id, &error);
@@ -100,8 +106,10 @@ test_marks_alone (Fixture *f, gconstpointer data)
   g_assert_no_error (error);
   g_assert_cmpuint (rows->len, ==, 1);
   const TfExportRow *row = &g_array_index (rows, TfExportRow, 0);
-  g_autofree char *person = text_of (row, "person"), *label = text_of (row, "label"), *origin = text_of (row, "origin");
-  g_autofree char *region = text_of (row, "region"), *frame = text_of (row, "frame"), *time = text_of (row, "time");
+  g_autofree char *person = text_of (row, "person"), *label = text_of (row, "label"),
+                  *origin = text_of (row, "origin");
+  g_autofree char *region = text_of (row, "region"), *frame = text_of (row, "frame"),
+                  *time = text_of (row, "time");
   g_assert_cmpstr (person, ==, "north");
   g_assert_cmpstr (label, ==, "gannet");
   g_assert_cmpstr (origin, ==, "kept as hinted");
@@ -129,7 +137,8 @@ test_judged_under_the_study (Fixture *f, gconstpointer data)
       TfVerdict again = tf_study_judge_measure (study, &row->row->measure);
       g_assert_cmpint (row->verdict.kind, ==, again.kind);
       g_assert_cmpstr (row->verdict.reason, ==, again.reason);
-      double tilt = column ("axis_tilt_deg")->number (row), polarity = column ("polarity_tilt_deg")->number (row);
+      double tilt = column ("axis_tilt_deg")->number (row),
+             polarity = column ("polarity_tilt_deg")->number (row);
       if (row->verdict.kind == TF_VERDICT_KEEPS)
         tf_check_near ("polarity tilt of one that keeps", polarity, tilt, 1e-9);
       if (row->verdict.kind != TF_VERDICT_BREAKS)
@@ -144,8 +153,8 @@ test_judged_under_the_study (Fixture *f, gconstpointer data)
 void
 add_row_tests (const char *demo_folder)
 {
-  g_test_add ("/exchange/rows/without-hints-a-ledger-gives-the-marks-alone", Fixture, demo_folder, set_up, test_marks_alone,
-              tear_down);
-  g_test_add ("/exchange/rows/rows-are-judged-under-the-study", Fixture, demo_folder, set_up, test_judged_under_the_study,
-              tear_down);
+  g_test_add ("/exchange/rows/without-hints-a-ledger-gives-the-marks-alone", Fixture, demo_folder,
+              set_up, test_marks_alone, tear_down);
+  g_test_add ("/exchange/rows/rows-are-judged-under-the-study", Fixture, demo_folder, set_up,
+              test_judged_under_the_study, tear_down);
 }

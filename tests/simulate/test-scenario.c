@@ -24,7 +24,8 @@ check_same (const char *a, const char *b)
       g_autofree char *one = NULL, *other = NULL, *path = g_build_filename (a, name, NULL);
       g_autofree char *beside = g_build_filename (b, name, NULL);
       g_assert_true (g_file_get_contents (path, &one, &n_one, NULL));
-      if (!g_file_get_contents (beside, &other, &n_other, NULL) || n_one != n_other || memcmp (one, other, n_one) != 0)
+      if (!g_file_get_contents (beside, &other, &n_other, NULL) || n_one != n_other
+          || memcmp (one, other, n_one) != 0)
         {
           g_printerr ("# %s is not the same in %s\n", name, b);
           g_test_fail ();
@@ -121,8 +122,11 @@ void
 add_scenario_tests (const char *demo_folder)
 {
   if (demo_folder != NULL)
-    g_test_add_data_func ("/simulate/demo/the-demo-frames-are-made-again-byte-for-byte", demo_folder, test_demo_same);
-  g_test_add_func ("/simulate/frames/equal-seeds-give-equal-bytes-on-any-number-of-threads", test_frames_same);
-  g_test_add_func ("/simulate/frames/the-share-that-breaks-hales-law-is-the-one-asked-for", test_anti_hale_share);
+    g_test_add_data_func ("/simulate/demo/the-demo-frames-are-made-again-byte-for-byte",
+                          demo_folder, test_demo_same);
+  g_test_add_func ("/simulate/frames/equal-seeds-give-equal-bytes-on-any-number-of-threads",
+                   test_frames_same);
+  g_test_add_func ("/simulate/frames/the-share-that-breaks-hales-law-is-the-one-asked-for",
+                   test_anti_hale_share);
   g_test_add_func ("/simulate/frames/a-folder-that-cannot-be-made-is-named", test_folder_refused);
 }

@@ -32,7 +32,8 @@ shoot (const TfSun *sun, TfTime time, const TfShot *shot, const TfWork *work)
   return frame;
 }
 
-/* B_los / mu times the area of the pixel, by the frame's own geometry: what a measurement does, written here anew. */
+/* B_los / mu times the area of the pixel, by the frame's own geometry: what a measurement does,
+ * written here anew. */
 static void
 sum_frame (const TfFrame *frame, Moment moment[2])
 {
@@ -74,8 +75,9 @@ check_frame (const TfSun *sun, TfTime time, const TfShot *shot, double lon_deg, 
     {
       tf_check_near ("flux / truth", got[sign].flux_mx / truth[sign].flux_mx, 1.0, 0.005);
       tf_check_near ("pole off, deg",
-                     tf_sphere_distance (got[sign].lon_deg, got[sign].lat_deg, truth[sign].lon_deg, truth[sign].lat_deg), 0.0,
-                     0.015);
+                     tf_sphere_distance (got[sign].lon_deg, got[sign].lat_deg, truth[sign].lon_deg,
+                                         truth[sign].lat_deg),
+                     0.0, 0.015);
     }
   tf_check_near ("tilt", planar_tilt (&got[1], &got[0]), planar_tilt (&truth[1], &truth[0]), 0.2);
 }
@@ -121,7 +123,8 @@ test_turned_off_centre_near_and_far (void)
       shot.centre_dy = rows[k].dy;
       shot.style = rows[k].style;
       if (rows[k].au > 0)
-        shot.observer = (TfObserver){ rows[k].au * TF_AU_M, rows[k].b0, rows[k].lon, NAN, TF_OBSERVER_HEADER };
+        shot.observer = (TfObserver){ rows[k].au * TF_AU_M, rows[k].b0, rows[k].lon, NAN,
+                                      TF_OBSERVER_HEADER };
       tf_sun_add_bipole (sun, "one", "bipole", &bipole);
       check_frame (sun, noon (), &shot, lon, 11.0);
     }
@@ -143,7 +146,8 @@ test_pixel_is_the_field_times_mu (void)
     {
       g_assert_true (tf_geometry_pixel_to_sun (g, x, 280, &place));
       tf_sphere_unit (place.carrington_lon_deg, place.lat_deg, unit);
-      tf_check_near ("B mu", tf_frame_value (frame, x, 280), tf_sun_field (sun, noon (), unit) * place.mu, 0.5);
+      tf_check_near ("B mu", tf_frame_value (frame, x, 280),
+                     tf_sun_field (sun, noon (), unit) * place.mu, 0.5);
     }
   tf_check_nan ("off the disk", tf_frame_value (frame, 3, 3));
 }
@@ -181,7 +185,8 @@ test_blur (void)
   tf_check_near ("flux kept", soft[0].flux_mx / sharp[0].flux_mx, 1.0, 2e-3);
   /* widths add in squares; a degree at the middle is R (d is D - R) deg / scale pixels */
   const TfGeometry *g = tf_frame_get_geometry (first);
-  double sigma = 0.5 * TF_DEG * g->radius_mm / (g->distance_mm - g->radius_mm) / TF_ARCSEC / scale, blur = 4.0 / 2.354820;
+  double sigma = 0.5 * TF_DEG * g->radius_mm / (g->distance_mm - g->radius_mm) / TF_ARCSEC / scale,
+         blur = 4.0 / 2.354820;
   g_assert_true (tf_geometry_sun_to_pixel (g, lon, 5.0, &x, &y, NULL));
   double ratio = tf_frame_value (second, x, y) / tf_frame_value (first, x, y);
   tf_check_near ("peak", ratio, sigma * sigma / (sigma * sigma + blur * blur), 0.02);
@@ -227,14 +232,15 @@ test_threads_agree (void)
   tf_sun_add_network (sun, 100, 5e19);
   g_autoptr (TfFrame) one = shoot (sun, noon (), &shot, NULL);
   g_autoptr (TfFrame) many = shoot (sun, noon (), &shot, &work);
-  g_assert_cmpmem (tf_frame_get_pixels (one), 512 * 512 * sizeof (float), tf_frame_get_pixels (many),
-                   512 * 512 * sizeof (float));
+  g_assert_cmpmem (tf_frame_get_pixels (one), 512 * 512 * sizeof (float),
+                   tf_frame_get_pixels (many), 512 * 512 * sizeof (float));
 }
 
 static void
 test_map_columns (void)
 {
-  /* Rotation 2142 began 2013-09-28.14 (reference page 1.5, Almanac C4): longitude 180 passed half a rotation later. */
+  /* Rotation 2142 began 2013-09-28.14 (reference page 1.5, Almanac C4): longitude 180 passed
+   * half a rotation later. */
   TfTime epoch = tf_time_read ("2013-09-28T03:21:36Z");
   TfShot shot;
   g_autoptr (TfSun) sun = tf_sun_new (epoch, 1);
@@ -261,7 +267,8 @@ test_map_columns (void)
           sum[k] += flux * unit[k];
       }
   tf_sphere_lonlat (sum, &moment.lon_deg, &moment.lat_deg);
-  /* 13.64 days at 14.0228 - 14.1844 deg/day; the flux is as much wider as columns pass faster: 1 + 0.16/14 of a day's turn */
+  /* 13.64 days at 14.0228 - 14.1844 deg/day; the flux is as much wider as columns pass faster:
+   * 1 + 0.16/14 of a day's turn */
   tf_check_near ("longitude", moment.lon_deg, 180.0 + 13.64 * (14.0228 - 14.1844), 0.1);
   tf_check_near ("latitude", moment.lat_deg, 20.0, 0.01);
   tf_check_near ("flux / asked", moment.flux_mx / 4e21, 1.0, 0.02);
@@ -284,7 +291,8 @@ test_speed (void)
     }
   gint64 start = g_get_monotonic_time ();
   g_autoptr (TfFrame) frame = shoot (sun, noon (), &shot, NULL);
-  g_test_message ("512 x 512 pixels, 20 regions: %.0f ms", (double)(g_get_monotonic_time () - start) / 1000.0);
+  g_test_message ("512 x 512 pixels, 20 regions: %.0f ms",
+                  (double)(g_get_monotonic_time () - start) / 1000.0);
 }
 
 static void
@@ -316,12 +324,14 @@ add_shoot_tests (void)
   g_test_add_func ("/simulate/shot/flux-poles-and-tilt-are-the-suns-own", test_places_on_the_disk);
   g_test_add_func ("/simulate/shot/turned-off-centre-near-and-far-observers-place-regions-right",
                    test_turned_off_centre_near_and_far);
-  g_test_add_func ("/simulate/shot/a-pixel-is-the-field-times-mu", test_pixel_is_the_field_times_mu);
+  g_test_add_func ("/simulate/shot/a-pixel-is-the-field-times-mu",
+                   test_pixel_is_the_field_times_mu);
   g_test_add_func ("/simulate/shot/the-far-side-is-not-seen", test_far_side_is_not_seen);
   g_test_add_func ("/simulate/shot/blur-keeps-flux-and-widens-by-squares", test_blur);
   g_test_add_func ("/simulate/shot/noise-and-steps-are-those-asked-for", test_noise_and_steps);
   g_test_add_func ("/simulate/shot/one-thread-and-four-agree-bit-for-bit", test_threads_agree);
-  g_test_add_func ("/simulate/shot/each-column-of-a-map-is-drawn-at-its-own-time", test_map_columns);
+  g_test_add_func ("/simulate/shot/each-column-of-a-map-is-drawn-at-its-own-time",
+                   test_map_columns);
   g_test_add_func ("/simulate/shot/twenty-regions-are-drawn-and-the-time-is-told", test_speed);
   g_test_add_func ("/simulate/shot/what-cannot-be-drawn-is-refused", test_bad_shots);
 }

@@ -11,13 +11,19 @@
 TfBipole
 two_poles (double lon_deg, double lat_deg)
 {
-  return (TfBipole){ .lat_deg = lat_deg, .carrington_lon_deg = lon_deg, .separation_deg = 8.0, .axis_tilt_deg = 12.0,
-                     .leading_polarity = -1, .flux_mx = 5e21, .lead_radius_deg = 1.0, .follow_radius_deg = 1.4 };
+  return (TfBipole){ .lat_deg = lat_deg,
+                     .carrington_lon_deg = lon_deg,
+                     .separation_deg = 8.0,
+                     .axis_tilt_deg = 12.0,
+                     .leading_polarity = -1,
+                     .flux_mx = 5e21,
+                     .lead_radius_deg = 1.0,
+                     .follow_radius_deg = 1.4 };
 }
 
 void
-integrate (const TfSun *sun, TfTime time, double lon_deg, double lat_deg, double half_deg, double step_deg,
-           Moment moment[2])
+integrate (const TfSun *sun, TfTime time, double lon_deg, double lat_deg, double half_deg,
+           double step_deg, Moment moment[2])
 {
   double radius_cm = TF_RADIUS_MM * 1e8, sum[2][3] = { { 0 } }, total[2] = { 0 };
   int n = (int)ceil (half_deg / step_deg);
@@ -27,8 +33,9 @@ integrate (const TfSun *sun, TfTime time, double lon_deg, double lat_deg, double
         double lat = lat_deg + (j + 0.5) * step_deg, lon = lon_deg + (i + 0.5) * step_deg, unit[3];
         tf_sphere_unit (lon, lat, unit);
         double field = tf_sun_field (sun, time, unit);
-        double area = radius_cm * radius_cm * step_deg * TF_DEG
-                      * (sin ((lat + 0.5 * step_deg) * TF_DEG) - sin ((lat - 0.5 * step_deg) * TF_DEG));
+        double area
+            = radius_cm * radius_cm * step_deg * TF_DEG
+              * (sin ((lat + 0.5 * step_deg) * TF_DEG) - sin ((lat - 0.5 * step_deg) * TF_DEG));
         int sign = field > 0 ? 0 : 1;
         total[sign] += fabs (field) * area;
         for (int k = 0; k < 3; k++)

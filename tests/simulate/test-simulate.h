@@ -18,9 +18,10 @@ typedef struct
 {
   double flux_mx, lon_deg, lat_deg;
 } Moment;
-/** integrate: the field itself over a patch of longitude and sine latitude: [0] positive, [1] negative. */
-void integrate (const TfSun *sun, TfTime time, double lon_deg, double lat_deg, double half_deg, double step_deg,
-                Moment moment[2]);
+/** integrate: the field itself over a patch of longitude and sine latitude: [0] positive, [1]
+ * negative. */
+void integrate (const TfSun *sun, TfTime time, double lon_deg, double lat_deg, double half_deg,
+                double step_deg, Moment moment[2]);
 /** planar_tilt: by the definition of reference 3.2 (G), written here anew. */
 double planar_tilt (const Moment *lead, const Moment *follow);
 char *make_folder (void);

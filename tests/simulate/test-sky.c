@@ -8,7 +8,8 @@
 #include "tf-constants.h"
 #include "tf-json.h"
 
-/* Pole of Gaussian width sigma on a plane: flux = 2 pi sigma^2 R^2 B (reference page 9.1 (a): pi d^2 R^2 B with d^2 = 2 sigma^2). */
+/* Pole of Gaussian width sigma on a plane: flux = 2 pi sigma^2 R^2 B (reference page 9.1 (a):
+ * pi d^2 R^2 B with d^2 = 2 sigma^2). */
 static void
 test_flux_closed_form (void)
 {
@@ -43,7 +44,8 @@ test_balance (void)
   g_assert_false (tf_sun_flux (sun, "two", epoch, &positive, &negative));
   integrate (sun, epoch, 50.0, -15.0, 13.0, 0.1, moment);
   tf_check_near ("drawn net / flux", (moment[0].flux_mx - moment[1].flux_mx) / 5e21, 0.0, 1e-4);
-  tf_check_near ("drawn flux / asked", moment[0].flux_mx / 5e21, 1.0, 2e-3); /* poles overlap a little */
+  tf_check_near ("drawn flux / asked", moment[0].flux_mx / 5e21, 1.0,
+                 2e-3); /* poles overlap a little */
 }
 
 static void
@@ -77,9 +79,11 @@ test_tilt_and_separation (void)
       if (fabs (lats[k % 4]) > 5.0)
         tf_check_near ("tilt", planar_tilt (&moment[1], &moment[0]), tilts[k / 4], 0.005);
       tf_check_near ("separation",
-                     tf_sphere_distance (moment[0].lon_deg, moment[0].lat_deg, moment[1].lon_deg, moment[1].lat_deg), 8.0,
-                     0.002);
-      g_assert_cmpfloat (remainder (moment[1].lon_deg - moment[0].lon_deg, 360), >, 0.0); /* negative leads: western */
+                     tf_sphere_distance (moment[0].lon_deg, moment[0].lat_deg, moment[1].lon_deg,
+                                         moment[1].lat_deg),
+                     8.0, 0.002);
+      g_assert_cmpfloat (remainder (moment[1].lon_deg - moment[0].lon_deg, 360), >,
+                         0.0); /* negative leads: western */
     }
 }
 
@@ -104,13 +108,16 @@ test_fragments (void)
       for (int sign = 0; sign < 2; sign++)
         {
           tf_check_near ("flux", b[sign].flux_mx / a[sign].flux_mx, 1.0, 2e-4);
-          tf_check_near ("centroid", tf_sphere_distance (a[sign].lon_deg, a[sign].lat_deg, b[sign].lon_deg, b[sign].lat_deg),
+          tf_check_near ("centroid",
+                         tf_sphere_distance (a[sign].lon_deg, a[sign].lat_deg, b[sign].lon_deg,
+                                             b[sign].lat_deg),
                          0.0, 1e-3);
         }
     }
 }
 
-/* What overlap takes away and how far apart the centroids then stand: reference page 9.1 (a), [calc] there on a plane. */
+/* What overlap takes away and how far apart the centroids then stand: reference page 9.1 (a),
+ * [calc] there on a plane. */
 static void
 test_overlap_against_reference (void)
 {
@@ -132,14 +139,18 @@ test_overlap_against_reference (void)
       tf_sun_build_truth (sun, epoch, &shot, builder);
       g_autoptr (JsonNode) root = json_builder_get_root (builder);
       JsonArray *sources = tf_json_member_array (json_node_get_object (root), "sources");
-      JsonObject *drawn = tf_json_member_object (json_array_get_object_element (sources, 0), "drawn");
+      JsonObject *drawn
+          = tf_json_member_object (json_array_get_object_element (sources, 0), "drawn");
       JsonObject *positive = tf_json_member_object (drawn, "positive");
-      tf_check_near ("flux left", tf_json_member_number (positive, "flux_mx") / 5e21, rows[k].share, 2e-3);
-      tf_check_near ("centroids apart", tf_json_member_number (drawn, "separation_deg") / 3.0, rows[k].apart, 2e-3);
+      tf_check_near ("flux left", tf_json_member_number (positive, "flux_mx") / 5e21, rows[k].share,
+                     2e-3);
+      tf_check_near ("centroids apart", tf_json_member_number (drawn, "separation_deg") / 3.0,
+                     rows[k].apart, 2e-3);
     }
 }
 
-/* The rate at 20 deg of Snodgrass & Ulrich 1990 (magnetic), reference page 2: 14.023 deg/day; Carrington 14.1844. */
+/* The rate at 20 deg of Snodgrass & Ulrich 1990 (magnetic), reference page 2: 14.023 deg/day;
+ * Carrington 14.1844. */
 static void
 test_carried (void)
 {
@@ -152,7 +163,8 @@ test_carried (void)
   integrate (sun, later, 1.2, -20.0, 12.0, 0.1, after);
   for (int sign = 0; sign < 2; sign++)
     {
-      tf_check_angle ("moved", remainder (after[sign].lon_deg - before[sign].lon_deg, 360), 5 * (14.023 - 14.1844), 0.004);
+      tf_check_angle ("moved", remainder (after[sign].lon_deg - before[sign].lon_deg, 360),
+                      5 * (14.023 - 14.1844), 0.004);
       tf_check_near ("latitude", after[sign].lat_deg, before[sign].lat_deg, 1e-3);
     }
 }
@@ -185,12 +197,14 @@ static void
 test_network (void)
 {
   TfTime epoch = tf_time_read ("2013-10-12T06:00:00Z");
-  g_autoptr (TfSun) sun = tf_sun_new (epoch, 3), same = tf_sun_new (epoch, 3), other = tf_sun_new (epoch, 4);
+  g_autoptr (TfSun) sun = tf_sun_new (epoch, 3), same = tf_sun_new (epoch, 3),
+                    other = tf_sun_new (epoch, 4);
   double unit[3], sum = 0, size = 0, differ = 0;
   tf_sun_add_network (sun, 301, 5e19);
   tf_sun_add_network (same, 301, 5e19);
   tf_sun_add_network (other, 301, 5e19);
-  for (double lat = -89.5; lat < 90; lat += 1.0) /* sigma is 0.4: coarse, so balance is loose; in mean by cosine */
+  for (double lat = -89.5; lat < 90;
+       lat += 1.0) /* sigma is 0.4: coarse, so balance is loose; in mean by cosine */
     for (double lon = 0; lon < 360; lon += 1.0)
       {
         tf_sphere_unit (lon, lat, unit);
@@ -202,18 +216,22 @@ test_network (void)
   tf_check_between ("net share", sum / size, -0.05, 0.05);
   tf_check_between ("two seeds differ", differ, 100.0, 1e9);
   tf_sphere_unit (33, 44, unit);
-  tf_check_near ("same seed", tf_sun_field (sun, epoch, unit), tf_sun_field (same, epoch, unit), 0.0);
+  tf_check_near ("same seed", tf_sun_field (sun, epoch, unit), tf_sun_field (same, epoch, unit),
+                 0.0);
 }
 
 void
 add_sky_tests (void)
 {
-  g_test_add_func ("/simulate/sun/one-pole-has-the-flux-and-peak-of-the-closed-form", test_flux_closed_form);
+  g_test_add_func ("/simulate/sun/one-pole-has-the-flux-and-peak-of-the-closed-form",
+                   test_flux_closed_form);
   g_test_add_func ("/simulate/sun/the-poles-of-a-bipole-balance", test_balance);
   g_test_add_func ("/simulate/sun/an-imbalance-is-taken-from-the-following-pole", test_imbalance);
-  g_test_add_func ("/simulate/sun/tilt-and-separation-are-those-asked-for", test_tilt_and_separation);
+  g_test_add_func ("/simulate/sun/tilt-and-separation-are-those-asked-for",
+                   test_tilt_and_separation);
   g_test_add_func ("/simulate/sun/fragments-keep-flux-and-centroid", test_fragments);
-  g_test_add_func ("/simulate/sun/what-overlap-leaves-agrees-with-the-reference", test_overlap_against_reference);
+  g_test_add_func ("/simulate/sun/what-overlap-leaves-agrees-with-the-reference",
+                   test_overlap_against_reference);
   g_test_add_func ("/simulate/sun/regions-are-carried-by-the-rotation-law", test_carried);
   g_test_add_func ("/simulate/sun/flux-grows-linearly-and-decays-by-its-e-time", test_growth);
   g_test_add_func ("/simulate/sun/the-network-is-balanced-and-seeded", test_network);

@@ -9,7 +9,8 @@
 #include "tf-constants.h"
 #include "tf-json.h"
 
-/* The same places on the Sun must fall on the same pixels under the geometry read back from the file. */
+/* The same places on the Sun must fall on the same pixels under the geometry read back from the
+ * file. */
 static void
 check_geometry (const TfGeometry *want, const TfGeometry *got)
 {
@@ -106,7 +107,8 @@ static void
 test_ground (void)
 {
   check_style (TF_STYLE_GROUND, "2013-10-14T06:00:00Z", 0.0, NULL);
-  check_style (TF_STYLE_GROUND, "2019-12-31T23:59:50Z", 0.0, NULL); /* GPS time is in the next year already */
+  check_style (TF_STYLE_GROUND, "2019-12-31T23:59:50Z", 0.0,
+               NULL); /* GPS time is in the next year already */
 }
 
 static void
@@ -165,5 +167,6 @@ add_style_tests (void)
   g_test_add_func ("/simulate/style/old-pixel-headers-open-as-intended", test_old_pixels);
   g_test_add_func ("/simulate/style/ground-headers-open-as-intended", test_ground);
   g_test_add_func ("/simulate/style/maps-open-as-intended", test_map);
-  g_test_add_func ("/simulate/style/a-continuum-picture-is-a-companion-and-no-field", test_companion);
+  g_test_add_func ("/simulate/style/a-continuum-picture-is-a-companion-and-no-field",
+                   test_companion);
 }
