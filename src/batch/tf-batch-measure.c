@@ -12,7 +12,7 @@
 
 void
 tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfMeasure *measure, const char *method,
-                        const TfStudy *study)
+                        const TfStudy *study, const TfComplexity *complexity, const TfComplexityParams *figures)
 {
   const TfFrameInfo *info = tf_frame_get_info (frame);
   TfSampleRow row;
@@ -24,6 +24,7 @@ tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *f
   tf_json_string (builder, "method", method);
   tf_json_string (builder, "instrument", info->instrument);
   tf_measure_build_members (measure, builder);
+  tf_complexity_build_members (complexity, figures, builder);
   tf_verdict_build_members (&verdict, &row, builder);
   json_builder_end_object (builder);
 }

@@ -12,6 +12,7 @@
 #include <json-glib/json-glib.h>
 
 #include "tf-bands.h"
+#include "tf-complexity.h"
 #include "tf-frame.h"
 #include "tf-study.h"
 
@@ -85,9 +86,11 @@ void tf_progress_step (TfProgress *progress, guint done, guint total);
 void tf_progress_end (TfProgress *progress);
 
 /* -- measures ---------------------------------------------------------------------------------- */
-/** tf_batch_build_measure: the whole `measure` object of one frame as the builder's next value. */
+/** tf_batch_build_measure: the whole `measure` object of one frame as the builder's next value. @complexity: (nullable): null in JSON, and then
+ * @figures may be NULL. */
 void tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfMeasure *measure,
-                             const char *method, const TfStudy *study);
+                             const char *method, const TfStudy *study, const TfComplexity *complexity,
+                             const TfComplexityParams *figures);
 /** tf_batch_dup_measure_text: the same for a person, a few lines. */
 char *tf_batch_dup_measure_text (const TfMeasure *measure, const TfStudy *study);
 

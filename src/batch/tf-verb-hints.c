@@ -28,7 +28,7 @@ build_hint (JsonBuilder *builder, const char *path, const TfFrame *frame, const 
   json_builder_set_member_name (builder, "outline");
   tf_outline_build_json (hint->outline, builder);
   json_builder_set_member_name (builder, "measure");
-  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study);
+  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study, NULL, NULL);
   json_builder_set_member_name (builder, "cautions");
   tf_notes_build_json (hint->cautions, builder);
   json_builder_end_object (builder);

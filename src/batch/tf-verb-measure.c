@@ -14,10 +14,11 @@
 
 typedef struct
 {
-  gboolean json, carrington;
+  gboolean json, carrington, anyway;
   char *cap, *outline, *floor, *even_floor;
   TfFrameWords frame;
   TfMeasureParams params;
+  TfComplexityParams figures;
 } Words;
 
 static TfOutline *
@@ -77,7 +78,9 @@ measure (Words *words, const char *path)
   g_autoptr (TfFrame) frame = tf_frame_open (path, &words->frame.spec, work, &error);
   g_autoptr (TfOutline) outline = frame != NULL ? read_outline (words, frame, &error) : NULL;
   g_auto (TfMeasure) m = { 0 };
-  if (outline == NULL || !tf_measure_region (&m, frame, outline, &words->params, &error))
+  g_auto (TfComplexity) complexity = { 0 };
+  if (outline == NULL || !tf_measure_region (&m, frame, outline, &words->params, &error)
+      || !tf_complexity_region (&complexity, frame, outline, &words->params, &words->figures, &error))
     {
       tf_batch_say_error (error);
       return g_error_matches (error, G_OPTION_ERROR, G_OPTION_ERROR_BAD_VALUE) ? TF_EXIT_CALL : TF_EXIT_NOTHING;
@@ -87,12 +90,14 @@ measure (Words *words, const char *path)
     {
       g_autofree char *method = tf_options_dup_canonical (tf_measure_options, &words->params, TF_MEASURE_METHOD);
       g_autoptr (JsonBuilder) builder = json_builder_new ();
-      tf_batch_build_measure (builder, path, frame, &m, method, study);
+      tf_batch_build_measure (builder, path, frame, &m, method, study, &complexity, &words->figures);
       tf_batch_print_json (builder);
       return TF_EXIT_DONE;
     }
   g_autofree char *text = tf_batch_dup_measure_text (&m, study);
+  g_autofree char *figures = tf_complexity_dup_text (&complexity);
   tf_batch_print (text);
+  tf_batch_print (figures);
   return TF_EXIT_DONE;
 }
 
@@ -118,18 +123,23 @@ tf_verb_measure (int argc, char **argv)
     { "outline", 0, 0, G_OPTION_ARG_FILENAME, &words.outline, N_ ("an outline as JSON"), "FILE" },
     { "floor", 0, 0, G_OPTION_ARG_STRING, &words.floor, N_ ("local floor on the field as observed"), "G" },
     { "even-floor", 0, 0, G_OPTION_ARG_STRING, &words.even_floor, N_ ("even floor on the field used"), "G" },
+    { "complexity-anyway", 0, 0, G_OPTION_ARG_NONE, &words.anyway, N_ ("give complexity near the limb as well"), NULL },
     { NULL },
   };
   tf_measure_params_init (&words.params);
+  tf_complexity_params_init (&words.figures);
   GOptionContext *context = tf_batch_context ("measure");
   g_option_context_add_main_entries (context, entries, GETTEXT_PACKAGE);
   tf_batch_add_frame_words (context, &words.frame);
   g_option_context_add_group (context, tf_options_new_group (tf_measure_options, &words.params, "method", N_ ("the method")));
+  g_option_context_add_group (context, tf_options_new_group (tf_complexity_options, &words.figures, "complexity",
+                                                             N_ ("inversion lines and complexity")));
   g_autoptr (GError) error = NULL;
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
   if (argc != 2 || (words.cap == NULL) == (words.outline == NULL))
     return tf_batch_usage ("measure", _ ("Name one frame, and either --cap LON,LAT,RADIUS or --outline FILE."));
+  words.figures.anyway |= words.anyway;
   if (!read_floors (&words, &error))
     {
       tf_batch_say_error (error);

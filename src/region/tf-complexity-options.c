@@ -15,7 +15,7 @@ static const char *const weights[] = { "area", "peak", NULL };
 const TfOption tf_complexity_options[] = {
   { "complexity-mu", TF_OPTION_NUMBER, "", 0.7, 0.0, 1.0, NULL,
     N_ ("complexity is given where the region's mu is at least this (0.7 is 45 degrees from disk centre)"), AT (mu_min) },
-  { "complexity-anyway", TF_OPTION_BOOL, "", 0, 0, 1, NULL,
+  { "complexity-near-limb", TF_OPTION_BOOL, "", 0, 0, 1, NULL,
     N_ ("give complexity nearer the limb as well; false inversion lines appear there on the limbward side of spots"), AT (anyway) },
   { "reference-fwhm", TF_OPTION_NUMBER, "Mm", 3.0, 0.5, 20.0, NULL,
     N_ ("width of the Gaussian that brings every frame to one resolution"), AT (fwhm_mm) },

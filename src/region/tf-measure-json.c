@@ -120,7 +120,6 @@ tf_measure_build_members (const TfMeasure *measure, JsonBuilder *builder)
   tf_json_number (builder, "axial_dipole_gauss", measure->axial_dipole_gauss);
   tf_json_number (builder, "axial_dipole_sigma_gauss", measure->axial_dipole_sigma_gauss);
   tf_json_number (builder, "axial_dipole_poles_gauss", measure->axial_dipole_poles_gauss);
-  tf_json_null (builder, "complexity");
   json_builder_set_member_name (builder, "cautions");
   tf_notes_build_json (measure->cautions, builder);
 }

@@ -138,7 +138,7 @@ void tf_tilt (double lead_lon_deg, double lead_lat_deg, double follow_lon_deg, d
               double *bearing_deg, double *axis_tilt_deg);
 
 /** tf_measure_build_members: all members of 6-commands "measure" that do not depend on the cycle, into the open object: from "time" to
- * "axial_dipole_gauss", "complexity" (null) and "cautions". */
+ * "axial_dipole_gauss", and "cautions"; "complexity" is tf_complexity_build_members (). */
 void tf_measure_build_members (const TfMeasure *measure, JsonBuilder *builder);
 const char *tf_field_used_name (TfFieldUsed used); /* "radial" "as observed" "potential" */
 const char *tf_floor_kind_name (TfFloorKind kind); /* "local" "even" */

@@ -29,6 +29,9 @@ MEASURE = """file time time_source method instrument scale floor_gauss floor_kin
 negative leading following axis_bearing_deg axis_tilt_deg polarity_tilt_deg tilt_sigma_deg tilt_terms separation_deg
 separation_sigma_deg separation_mm compactness pieces flux_unsigned_mx imbalance mu cmd_deg size cycle hale axial_dipole_gauss
 complexity cautions""".split()
+COMPLEXITY = """line_length_mm strong_gradient_length_mm gradient_weighted_length_gauss max_gradient_gauss_mm r_mx r_log10
+flux_near_line_mx pieces delta_candidate delta_reason lines resolution_fwhm_mm resolution_step_mm field_used parameters
+cautions""".split()
 POLE = """flux_mx flux_sigma_mx lon_deg carrington_lon_deg lat_deg place_sigma_deg pixels magnetic_area_msh""".split()
 LAWS = "study sample hale joy mean_tilt_deg median_tilt_deg cycle_choice what_if cautions".split()
 HALE = """cycle hemisphere n regions keeps breaks cannot_say share_breaks bounds expected_false wilson clopper_pearson cluster
@@ -186,6 +189,24 @@ def _():
         assert found["floor_kind"] == ("even" if floors and floors[0] == "--even-floor" else "local")
     assert found["floor_gauss"] == 80
     call("measure", path, "--cap", "170,0,5", code=3)
+
+
+@test("complexity stands in a measure with its caution, and near the limb only when asked for")
+def _():
+    path = first_disk()
+    b0 = document("inspect", "--json", path)[0]["observer"]["b0_deg"]
+    middle, edge = f"--cap=0,{b0},6", f"--cap=58,{b0},6"
+    found = document("measure", "--json", path, middle)
+    has(found["complexity"], COMPLEXITY)
+    assert found["complexity_reason"] is None
+    assert any("not a flare forecast" in note["text"] for note in found["complexity"]["cautions"])
+    assert "not a flare forecast" in call("measure", path, middle).stdout
+    refused = document("measure", "--json", path, edge)
+    assert refused["complexity"] is None and refused["complexity_reason"]["code"] == "complexity-near-limb"
+    assert refused["complexity_reason"]["text"].split(".")[0] in call("measure", path, edge).stdout
+    asked = document("measure", "--json", "--complexity-anyway", path, edge)
+    has(asked["complexity"], COMPLEXITY)
+    assert any(note["code"] == "complexity-limb-asked" for note in asked["complexity"]["cautions"])
 
 
 @test("fill skips what is there, goes on past bad files, and check finds nothing wrong")
