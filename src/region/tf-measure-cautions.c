@@ -55,15 +55,16 @@ caution_shape (TfMeasure *m)
     tf_notes_add (m->cautions, "pole-pinned", "s", m->positive.pinned ? "+" : "-");
 }
 
+/* How many pixels share the extreme value of one sign. */
 static guint
-count_extreme (const TfRegionSamples *samples, float *extreme)
+count_extreme (const TfRegionSamples *samples, float sign, float *extreme)
 {
   guint n = 0;
   float top = 0.0f;
   for (guint k = 0; k < samples->n; k++)
-    top = MAX (top, fabsf (samples->pixels[k].field));
+    top = MAX (top, sign * samples->pixels[k].field);
   for (guint k = 0; k < samples->n; k++)
-    n += !(fabsf (samples->pixels[k].field) < top);
+    n += !(sign * samples->pixels[k].field < top);
   *extreme = top;
   return n;
 }
@@ -71,10 +72,13 @@ count_extreme (const TfRegionSamples *samples, float *extreme)
 static void
 caution_pixels (TfMeasure *m, const TfRegionSamples *samples)
 {
-  float extreme;
-  guint n = count_extreme (samples, &extreme);
-  if (n >= SATURATED_PIXELS && extreme >= SATURATED_GAUSS)
-    tf_notes_add (m->cautions, "saturated-core", "id", (int)n, (double)extreme);
+  for (int sign = -1; sign <= 1; sign += 2)
+    {
+      float extreme;
+      guint n = count_extreme (samples, (float)sign, &extreme);
+      if (n >= SATURATED_PIXELS && extreme >= (float)SATURATED_GAUSS)
+        tf_notes_add (m->cautions, "saturated-core", "id", (int)n, (double)extreme);
+    }
   if (tf_mask_get_missing (samples->mask) > 0)
     tf_notes_add (m->cautions, "touches-missing-data", "i", (int)tf_mask_get_missing (samples->mask));
   if (tf_mask_get_cut (samples->mask) > CUT_SHARE)

@@ -41,7 +41,7 @@ const TfOption tf_measure_options[] = {
     N_ ("strong field, for the second witness, in units of the floor"), AT (strong_floors) },
   { "piece-share", TF_OPTION_NUMBER, "", 0.15, 0.01, 0.5, NULL,
     N_ ("share of the flux from which a part of one polarity counts as a piece"), AT (piece_share) },
-  { "smooth", TF_OPTION_NUMBER, "pixel", 1.5, 0.5, 5.0, NULL,
+  { "smooth", TF_OPTION_NUMBER, "pixel", 0.9, 0.5, 5.0, NULL,
     N_ ("sigma of the Gaussian that smooths the field of the noise term"), AT (smooth_px) },
   { "floor-step", TF_OPTION_NUMBER, "", 0.2, 0.01, 0.5, NULL,
     N_ ("relative step of the floor for the floor term of the uncertainty"), AT (floor_step) },

@@ -4,9 +4,12 @@
 
 /* The outline and floor terms of the uncertainty.
  *
- * Outline: the region is measured in 16 fixed deformations of its outline (shift, scale, first three harmonics); the
- * term is 1.4826 times the median absolute deviation. Pixels are read once, in a wider outline that holds them all; only
- * those above the floor are kept, so that a deformation costs one inside test a pixel.
+ * Outline: the region is measured in 16 fixed deformations of its outline; each mixes a shift, a change of size and the first three
+ * harmonics, with signs from an orthogonal two-level design (Box & Hunter 1961, Technometrics 3, 311; from memory), so that 16 are
+ * enough for the effects of all to add up in the scatter. The root mean square displacement of the line is the
+ * amplitude: outline_deg, or outline_share of the outline's radius, whichever is more. The term is 1.4826 times the median absolute deviation.
+ * Pixels are read once, in a wider outline that holds them all; only those above the floor are kept, so that a deformation
+ * costs one inside test a pixel.
  * Floor: root mean square of the changes at floors 1 +- step.
  */
 
@@ -18,46 +21,56 @@
 #include "tf-measure-private.h"
 
 enum { DEFORMATIONS = 16 };
+/* Shifts and harmonics together move no point by more amplitudes than this. */
+static const double REACH = 2.3;
 
-typedef struct
+/* What is mixed: each part's share of the amplitude, and the run's bits whose parity is its sign. The squares of the shares, shifts
+ * and harmonics halved (their mean over the angle), add up to 1. */
+typedef enum
 {
-  double west, north, scale; /* shift in amplitudes; change of scale in amplitudes over the radius */
-  double harmonic[3];        /* amplitudes */
-  double phase_deg[3];
-} Deformation;
+  PART_SIZE,
+  PART_WEST,
+  PART_NORTH,
+  PART_COS_1,
+  PART_SIN_1,
+  PART_COS_2,
+  PART_SIN_2,
+  PART_COS_3,
+  PART_SIN_3,
+  N_PARTS
+} Part;
 
-static const double DIAGONAL = 0.70710678118654752;
-
-static const Deformation deformations[DEFORMATIONS] = {
-  { .west = 1.0 },
-  { .west = -1.0 },
-  { .north = 1.0 },
-  { .north = -1.0 },
-  { .scale = 1.0 },
-  { .scale = -1.0 },
-  { .west = DIAGONAL, .north = DIAGONAL, .harmonic = { 0.0, 0.5, 0.0 }, .phase_deg = { 0.0, 45.0, 0.0 } },
-  { .west = -DIAGONAL, .north = DIAGONAL, .harmonic = { 0.0, 0.5, 0.0 }, .phase_deg = { 0.0, 135.0, 0.0 } },
-  { .harmonic = { 0.0, 1.0, 0.0 } },
-  { .harmonic = { 0.0, -1.0, 0.0 } },
-  { .harmonic = { 0.0, 1.0, 0.0 }, .phase_deg = { 0.0, 45.0, 0.0 } },
-  { .harmonic = { 0.0, -1.0, 0.0 }, .phase_deg = { 0.0, 45.0, 0.0 } },
-  { .harmonic = { 0.0, 0.0, 1.0 } },
-  { .harmonic = { 0.0, 0.0, -1.0 } },
-  { .harmonic = { 1.0, 0.0, 0.0 }, .phase_deg = { 45.0, 0.0, 0.0 } },
-  { .harmonic = { 1.0, 0.0, 0.0 }, .phase_deg = { 225.0, 0.0, 0.0 } },
+static const struct
+{
+  double share;
+  guint bits;
+} parts[N_PARTS] = {
+  { 0.60, 1 }, { 0.50, 2 }, { 0.50, 4 }, { 0.30, 8 }, { 0.30, 7 }, { 0.42, 11 }, { 0.42, 13 }, { 0.36, 14 }, { 0.36, 15 },
 };
 
+static double
+part (guint run, Part which)
+{
+  guint bits = run & parts[which].bits, odd = 0;
+  for (; bits != 0; bits &= bits - 1)
+    odd ^= 1;
+  return odd ? -parts[which].share : parts[which].share;
+}
+
+/* @radius: of a circle of the outline's area, deg, so that a change of size moves the line by its share. */
 static TfOutline *
-deform (const TfOutline *outline, const Deformation *d, double amplitude, double radius)
+deform (const TfOutline *outline, guint run, double amplitude, double radius)
 {
   double size[3], phase[3];
   for (guint k = 0; k < 3; k++)
     {
-      size[k] = d->harmonic[k] * amplitude;
-      phase[k] = d->phase_deg[k] * TF_DEG;
+      double c = part (run, PART_COS_1 + 2 * k), s = part (run, PART_SIN_1 + 2 * k);
+      size[k] = amplitude * hypot (c, s);
+      phase[k] = atan2 (s, c) / (k + 1);
     }
-  double scale = MAX (0.1, 1.0 + d->scale * amplitude / radius);
-  return tf_outline_deform (outline, d->west * amplitude, d->north * amplitude, scale, size, phase);
+  double scale = MAX (0.1, 1.0 + part (run, PART_SIZE) * amplitude / radius);
+  return tf_outline_deform (outline, amplitude * part (run, PART_WEST), amplitude * part (run, PART_NORTH), scale, size,
+                            phase);
 }
 
 static gint
@@ -91,14 +104,14 @@ deviation (double values[DEFORMATIONS])
   return 1.4826 * median (values, DEFORMATIONS);
 }
 
-/* Places: the differences are distances already: the middle one, as for one axis. */
+/* Places: the differences are distances already; of two normal axes the root mean square is 1.2011 times the median. */
 static double
 middle_distance (const double values[DEFORMATIONS])
 {
   double copy[DEFORMATIONS];
   for (guint k = 0; k < DEFORMATIONS; k++)
     copy[k] = values[k];
-  return 1.4826 * median (copy, DEFORMATIONS);
+  return 1.2011 * median (copy, DEFORMATIONS);
 }
 
 /* The pixels above the floor of all deformations together. */
@@ -176,17 +189,19 @@ tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const Tf
   double lon, lat, radius, radius_mm = tf_frame_get_geometry (frame)->radius_mm;
   tf_outline_get_cap (outline, &lon, &lat, &radius);
   double amplitude = MAX (params->outline_deg, params->outline_share * radius);
+  double mean = sqrt (tf_outline_area (outline, radius_mm) / TF_PI) / radius_mm / TF_DEG;
   gboolean circle = params->tilt_form == 1;
   Kept kept;
   Trials trials;
   TfSum sums[2] = { 0 };
   TfAxis base, axis;
-  open_kept (&kept, frame, outline, params, 2.0 * amplitude);
+  mean = MAX (mean, 0.1);
+  open_kept (&kept, frame, outline, params, amplitude * (REACH + parts[PART_SIZE].share * radius / mean));
   sum_inside (&kept, outline, sums);
   tf_axis_from_sums (&base, sums, outline, radius_mm, circle);
   for (guint k = 0; k < DEFORMATIONS; k++)
     {
-      g_autoptr (TfOutline) changed = deform (outline, &deformations[k], amplitude, MAX (radius, 0.1));
+      g_autoptr (TfOutline) changed = deform (outline, k, amplitude, mean);
       TfSum inside[2] = { 0 };
       TfSpread d;
       sum_inside (&kept, changed, inside);

@@ -105,8 +105,9 @@ void tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double
                       double *noise_flux);
 /** tf_region_realise: the same from seeded realisations of the smoothed field. */
 void tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfSpread *spread);
-/** tf_region_smooth: the field, scaled, smoothed by params->smooth_px; one value a sample. */
-float *tf_region_smooth (const TfRegionSamples *samples);
+/** tf_region_smooth: the field, scaled, smoothed by params->smooth_px; one value a sample. @rest: what part of a pixel's sigma is no
+ * longer in it: sqrt (1 - sum of the kernel's squares). */
+float *tf_region_smooth (const TfRegionSamples *samples, double *rest);
 
 /* tf-measure-outline.c */
 void tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,

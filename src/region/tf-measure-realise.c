@@ -3,7 +3,7 @@
  */
 
 /* The noise term by trial: normal noise of the frame's sigma is laid over the smoothed field, the region is measured anew,
- * and the scatter is taken. Equal seeds give equal numbers on every machine (GRand is a fixed generator). */
+ * and the root mean square departure from the measure of the smoothed field itself is taken. Equal seeds give equal numbers on every machine (GRand is a fixed generator). */
 
 #include <math.h>
 
@@ -37,13 +37,14 @@ draw (Gauss *gauss)
   return u * factor;
 }
 
+/* @rest: share of sigma that is laid on; @gauss: NULL for the smoothed field as it is. */
 static void
-realise (const TfRegionSamples *samples, const float *smooth, Gauss *gauss, TfSum sums[2])
+realise (const TfRegionSamples *samples, const float *smooth, double rest, Gauss *gauss, TfSum sums[2])
 {
   for (guint k = 0; k < samples->n; k++)
     {
       const TfSampled *s = &samples->samples[k];
-      double d = smooth[k] + s->sigma * draw (gauss);
+      double d = smooth[k] + (gauss != NULL ? rest * s->sigma * draw (gauss) : 0.0);
       if (fabs (d) >= s->floor)
         tf_sum_add (&sums[d > 0.0 ? TF_POSITIVE : TF_NEGATIVE], &samples->pixels[k], fabs (d) * s->weight);
     }
@@ -66,12 +67,13 @@ scatter_add (Scatter *scatter, double x)
 }
 
 static double
-scatter_sd (const Scatter *scatter, double factor)
+scatter_rms (const Scatter *scatter, double factor)
 {
   if (scatter->n < 2.0)
     return NAN;
   double mean = scatter->sum / scatter->n;
-  return factor * sqrt (MAX (0.0, scatter->sum2 / scatter->n - mean * mean) * scatter->n / (scatter->n - 1.0));
+  double variance = MAX (0.0, scatter->sum2 / scatter->n - mean * mean) * scatter->n / (scatter->n - 1.0);
+  return sqrt (factor * variance + mean * mean);
 }
 
 void
@@ -79,19 +81,21 @@ tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfS
 {
   Scatter flux[2] = { 0 }, west[2] = { 0 }, north[2] = { 0 }, tilt = { 0 }, separation = { 0 }, dx = { 0 }, dipole = { 0 };
   double radius = tf_frame_get_geometry (samples->frame)->radius_mm;
-  double factor = sqrt (tf_frame_noise_correlation (samples->frame));
-  g_autofree float *smooth = tf_region_smooth (samples);
+  double factor = tf_frame_noise_correlation (samples->frame);
+  double rest;
+  g_autofree float *smooth = tf_region_smooth (samples, &rest);
   g_autoptr (GRand) rand = g_rand_new_with_seed ((guint32)samples->params->seed);
   Gauss gauss = { rand, FALSE, 0.0 };
   TfAxis first, axis;
+  TfSum still[2] = { 0 };
+  realise (samples, smooth, rest, NULL, still);
+  tf_axis_from_sums (&first, still, outline, radius, samples->params->tilt_form == 1);
   for (int k = 0; k < samples->params->realisations; k++)
     {
       TfSum sums[2] = { 0 };
       TfSpread d;
-      realise (samples, smooth, &gauss, sums);
+      realise (samples, smooth, rest, &gauss, sums);
       tf_axis_from_sums (&axis, sums, outline, radius, samples->params->tilt_form == 1);
-      if (k == 0)
-        first = axis;
       tf_axis_difference (&axis, &first, &d);
       for (guint sign = 0; sign < 2; sign++)
         {
@@ -106,11 +110,11 @@ tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfS
     }
   for (guint sign = 0; sign < 2; sign++)
     {
-      spread->flux[sign] = scatter_sd (&flux[sign], factor);
-      spread->place[sign] = hypot (scatter_sd (&west[sign], factor), scatter_sd (&north[sign], factor));
+      spread->flux[sign] = scatter_rms (&flux[sign], factor);
+      spread->place[sign] = hypot (scatter_rms (&west[sign], factor), scatter_rms (&north[sign], factor));
     }
-  spread->tilt = scatter_sd (&tilt, factor);
-  spread->separation = scatter_sd (&separation, factor);
-  spread->dx = scatter_sd (&dx, factor);
-  spread->dipole = scatter_sd (&dipole, factor);
+  spread->tilt = scatter_rms (&tilt, factor);
+  spread->separation = scatter_rms (&separation, factor);
+  spread->dx = scatter_rms (&dx, factor);
+  spread->dipole = scatter_rms (&dipole, factor);
 }

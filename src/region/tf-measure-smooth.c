@@ -96,25 +96,32 @@ blur (float *values, Patch *patch, const float *kernel, int reach)
   blur_columns (patch->half, values, patch->width, patch->height, kernel, reach);
 }
 
+/* @squares: sum of the kernel's squares: the share of the noise's variance that it leaves. */
 static int
-make_kernel (double sigma, float kernel[2 * MAX_REACH + 1])
+make_kernel (double sigma, float kernel[2 * MAX_REACH + 1], double *squares)
 {
   int reach = MIN (MAX_REACH, (int)ceil (4.0 * sigma));
   double sum = 0.0;
   for (int k = -reach; k <= reach; k++)
     sum += exp (-0.5 * k * k / (sigma * sigma));
   for (int k = -reach; k <= reach; k++)
-    kernel[k + reach] = (float)(exp (-0.5 * k * k / (sigma * sigma)) / sum);
+    {
+      double c = exp (-0.5 * k * k / (sigma * sigma)) / sum;
+      kernel[k + reach] = (float)c;
+      *squares += c * c;
+    }
   return reach;
 }
 
 float *
-tf_region_smooth (const TfRegionSamples *samples)
+tf_region_smooth (const TfRegionSamples *samples, double *rest)
 {
   float kernel[2 * MAX_REACH + 1];
-  int reach = make_kernel (samples->params->smooth_px, kernel);
+  double squares = 0.0;
+  int reach = make_kernel (samples->params->smooth_px, kernel, &squares);
   Patch patch = { 0 };
   float *out = g_new (float, MAX (samples->n, 1));
+  *rest = sqrt (MAX (0.0, 1.0 - squares * squares));
   open_patch (&patch, samples, (guint)reach, (float)tf_region_scale (samples->params));
   blur (patch.field, &patch, kernel, reach);
   if (patch.gaps)

@@ -168,13 +168,21 @@ tf_region_sums (const TfRegionSamples *samples, TfSums *sums)
       merge (&sums->at[level - 1][sign], &sums->at[level][sign]);
 }
 
+/* A pole of one pixel still has that pixel's own extent: a uniform square of side a has rms radius a / sqrt (6). */
+static double
+rms_radius (const TfSum *sum, double length, double radius_mm)
+{
+  double pixel = sqrt (sum->area / (6.0 * sum->n)) / radius_mm;
+  return MAX (sqrt (2.0 * MAX (0.0, 1.0 - length / sum->flux)), pixel) / TF_DEG;
+}
+
 static void
-find_pole (TfAxis *axis, guint sign, const TfSum *sum)
+find_pole (TfAxis *axis, guint sign, const TfSum *sum, double radius_mm)
 {
   double length = sqrt (sum->sum[0] * sum->sum[0] + sum->sum[1] * sum->sum[1] + sum->sum[2] * sum->sum[2]);
   axis->flux[sign] = sum->flux;
   axis->has[sign] = length > 0.0;
-  axis->radius[sign] = axis->has[sign] ? sqrt (2.0 * MAX (0.0, 1.0 - length / sum->flux)) / TF_DEG : (double)NAN;
+  axis->radius[sign] = axis->has[sign] ? rms_radius (sum, length, radius_mm) : (double)NAN;
   axis->lon[sign] = axis->lat[sign] = NAN;
   if (!axis->has[sign])
     return;
@@ -220,7 +228,7 @@ tf_axis_from_sums (TfAxis *axis, const TfSum sums[2], const TfOutline *outline, 
   axis->dx = axis->dy = axis->bearing = axis->tilt = axis->separation = NAN;
   axis->dipole = dipole (sums, radius_mm);
   for (guint sign = 0; sign < 2; sign++)
-    find_pole (axis, sign, &sums[sign]);
+    find_pole (axis, sign, &sums[sign], radius_mm);
   if (outline != NULL)
     apply_pins (axis, outline);
   if (!axis->has[0] || !axis->has[1])

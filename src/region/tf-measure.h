@@ -57,7 +57,7 @@ typedef struct
   double scale;          /* instrument scale that multiplies the field; NaN: not scaled (1) */
   double strong_floors;  /* 3: witness (b) */
   double piece_share;    /* 0.15 */
-  double smooth_px;      /* 1.5: Gaussian of the noise term's field */
+  double smooth_px;      /* 0.9: Gaussian of the noise term's field */
   double floor_step;     /* 0.2: the floor term */
   double outline_deg;    /* 0.5: the outline term's amplitude ... */
   double outline_share;  /* 0.08: ... or this share of the radius, whichever is more */

@@ -17,7 +17,7 @@ void
 builder_init (BuilderFrame *how, double lon, double lat, double scale_arcsec)
 {
   *how = (BuilderFrame){ .scale_arcsec = scale_arcsec, .b0_deg = -4.2, .distance_au = 0.991, .lon = lon, .lat = lat,
-                         .half_deg = 8.0, .fine = 4, .seed = 1 };
+                         .half_deg = 8.0, .fine = 4, .seed = 1, .dx = 0.31, .dy = -0.17 };
 }
 
 TfGeometry
@@ -32,7 +32,7 @@ builder_geometry (const BuilderFrame *how)
                                         TF_RADIUS_MM));
   g_assert_true (tf_geometry_sun_to_pixel (&g, BUILDER_L0 + how->lon, how->lat, &x, &y, &mu));
   double middle = 0.5 * (side + 1);
-  g_assert_true (tf_geometry_make_disk (&g, side, side, middle - x + 0.31, middle - y - 0.17, how->scale_arcsec,
+  g_assert_true (tf_geometry_make_disk (&g, side, side, middle - x + how->dx, middle - y + how->dy, how->scale_arcsec,
                                         how->turn_deg, &observer, TF_RADIUS_MM));
   return g;
 }

@@ -35,6 +35,7 @@ typedef struct
   guint32 seed;
   gboolean radial;   /* a radial product: no mu */
   guint fine;        /* grid inside a pixel: fine x fine */
+  double dx, dy;     /* the region's middle against the middle pixel's centre, pixels */
 } BuilderFrame;
 
 /* Carrington longitude of the central meridian in all built frames. */

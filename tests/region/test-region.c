@@ -12,5 +12,10 @@ main (int argc, char **argv)
   add_bipole_tests ();
   add_inversion_tests ();
   add_complexity_tests ();
+  add_invariant_tests ();
+  add_flag_tests ();
+  add_noise_tests ();
+  add_outline_tests ();
+  add_real_tests ();
   return g_test_run ();
 }
