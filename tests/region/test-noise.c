@@ -22,7 +22,7 @@ typedef struct
   double lon, lat, tilt;
 } NoisePlace;
 
-static const NoisePlace noise_places[] = { { 18.0, 19.0, 14.0 }, { -38.0, -14.0, -9.0 }, { 4.0, 10.0, 6.0 } };
+static const NoisePlace noise_places[] = { { 18.0, 19.0, 14.0 }, { 43.0, -22.0, 10.0 }, { -50.0, 12.0, 10.0 } };
 static const double noise_levels[] = { 10.0, 20.0 };
 
 /* One spot that leads, grains that follow. */
