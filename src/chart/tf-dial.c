@@ -17,8 +17,9 @@ typedef struct
   double name_y;         /* top of the relation's name */
 } Layout;
 
-#define PAD      4.0
-#define MIN_TEXT 8.0
+#define PAD        4.0
+#define MIN_TEXT   8.0
+#define SIDE_LINES 4.2 /* of the column beside the circle; it ends above the name */
 
 static double
 line_height (const TfChartStyle *style)
@@ -85,7 +86,7 @@ lay_out (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea area
   at.y = area.y + PAD + at.radius;
   at.name_y = at.y + at.radius + 3;
   at.side_x = at.beside ? at.x + at.radius + letter + 2 * PAD : area.x + PAD;
-  at.side_y = at.beside ? at.y + line * 0.7 : at.name_y + foot;
+  at.side_y = at.beside ? at.y + MIN (0.7 * line, at.radius - SIDE_LINES * line) : at.name_y + foot;
   return at;
 }
 

@@ -157,6 +157,36 @@ nothing_is_cut_off (void)
       }
 }
 
+/* The name under the dial lies on nothing else. */
+static void
+the_name_stands_free (void)
+{
+  static const double sizes[][2]
+      = { { 272, 152 }, { 300, 190 }, { 200, 230 }, { 400, 160 }, { 270, 130 }, { 240, 120 } };
+  static const double texts[] = { 9, 11, 14 };
+  for (guint k = 0; k < G_N_ELEMENTS (sizes) * G_N_ELEMENTS (texts); k++)
+    {
+      TfChartStyle style = tf_chart_style (FALSE, FALSE, texts[k / G_N_ELEMENTS (sizes)]);
+      int w = (int)sizes[k % G_N_ELEMENTS (sizes)][0], h = (int)sizes[k % G_N_ELEMENTS (sizes)][1];
+      g_auto (Picture) with = picture_new (w, h, style.ground);
+      g_auto (Picture) without = picture_new (w, h, style.ground);
+      TfDial dial = { -24, 4, -17, 9, 11, "Stenflo & Kosovichev 2012", -1, 1, { 1, -1, 0 } };
+      tf_dial_draw (with.cr, &dial, &style, (TfArea){ 0, 0, w, h });
+      dial.joy_name = " ";
+      tf_dial_draw (without.cr, &dial, &style, (TfArea){ 0, 0, w, h });
+      guint name = 0, upon = 0;
+      for (int y = 0; y < h; y++)
+        for (int x = 0; x < w; x++)
+          if (colour_distance (picture_at (&with, x, y), picture_at (&without, x, y)) > 0.05)
+            {
+              name++;
+              upon += colour_distance (picture_at (&without, x, y), style.ground) > 0.05;
+            }
+      g_assert_cmpuint (name, >, 200);
+      g_assert_cmpuint (upon, ==, 0);
+    }
+}
+
 static cairo_status_t
 swallow (void *closure, const unsigned char *data, unsigned int length)
 {
@@ -217,6 +247,7 @@ add_dial_tests (void)
   g_test_add_func ("/chart/dial/an-empty-dial-has-a-circle-alone",
                    an_empty_dial_has_a_circle_alone);
   g_test_add_func ("/chart/dial/nothing-is-cut-off-at-any-size", nothing_is_cut_off);
+  g_test_add_func ("/chart/dial/the-name-stands-free", the_name_stands_free);
   g_test_add_func ("/chart/dial/svg-and-pdf-take-the-same-drawing",
                    svg_and_pdf_take_the_same_drawing);
   g_test_add_func ("/chart/dial/the-description-says-what-is-shown",
