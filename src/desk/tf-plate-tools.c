@@ -80,6 +80,22 @@ drag_to (TfPlate *self, double x, double y, gboolean pan)
   self->last_y = y;
 }
 
+/* GTK gives one move a frame of animation; a hand is quicker. The moves between are in the event's history, in places
+ * of the surface, and belong to the line. */
+static void
+draw_between (GtkGestureDrag *gesture, double x, double y, TfPlate *self)
+{
+  GdkEvent *event = gtk_event_controller_get_current_event (GTK_EVENT_CONTROLLER (gesture));
+  double at_x, at_y;
+  guint n = 0;
+  if (event == NULL || !gdk_event_get_position (event, &at_x, &at_y))
+    return;
+  g_autofree GdkTimeCoord *past = gdk_event_get_history (event, &n);
+  for (guint k = 0; past != NULL && k < n; k++)
+    if ((past[k].flags & GDK_AXIS_FLAG_X) != 0 && (past[k].flags & GDK_AXIS_FLAG_Y) != 0)
+      draw_to (self, past[k].axes[GDK_AXIS_X] - at_x + x, past[k].axes[GDK_AXIS_Y] - at_y + y);
+}
+
 static void
 drag_update (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
 {
@@ -89,6 +105,8 @@ drag_update (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
     return;
   self->moved = TRUE;
   gboolean middle = gtk_gesture_single_get_current_button (GTK_GESTURE_SINGLE (gesture)) == GDK_BUTTON_MIDDLE;
+  if (!middle && is_drawing (self))
+    draw_between (gesture, x + dx, y + dy, self);
   drag_to (self, x + dx, y + dy, middle || !is_drawing (self));
 }
 
