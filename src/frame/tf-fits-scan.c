@@ -118,6 +118,15 @@ check_tiles (const TfHeader *header, const char *path, guint hdu, GError **error
       tiles *= ceil (side / tile);
       pixels *= side;
     }
+  for (guint k = 1; k < 10; k++)
+    {
+      g_autofree char *name = g_strdup_printf ("ZNAME%u", k);
+      const char *word = tf_header_get (header, name);
+      double value = indexed (header, "ZVAL", k);
+      gboolean block = word != NULL && strcmp (word, "BLOCKSIZE") == 0;
+      if ((block || (word != NULL && strcmp (word, "BYTEPIX") == 0)) && !(value >= 1 && value <= (block ? 4096 : 8)))
+        return bad_tiles (path, hdu, word, value, error);
+    }
   if (!(tiles <= rows))
     return bad_tiles (path, hdu, "NAXIS2", rows, error);
   if (!(pixels * bits / 8 / PACK_LIMIT <= data_bytes (header) + BLOCK))
@@ -125,16 +134,42 @@ check_tiles (const TfHeader *header, const char *path, guint hdu, GError **error
   return TRUE;
 }
 
+static gboolean
+is_count (double value, double most)
+{
+  return value >= 0 && value <= most && fabs (value - rint (value)) < 1e-9;
+}
+
+/* The words that CFITSIO sizes an HDU by are counts (4.2.0 goes on with what was in memory where one is not). */
+static gboolean
+is_sound (const TfHeader *header)
+{
+  const char *kind = tf_header_get (header, "XTENSION");
+  double axes = tf_header_number (header, "NAXIS"), bits = fabs (tf_header_number (header, "BITPIX"));
+  if (!is_count (axes, 999) || !(bits >= 8 && bits <= 64))
+    return FALSE;
+  for (guint k = 1; k <= axes; k++)
+    if (!is_count (indexed (header, "NAXIS", k), 1e15))
+      return FALSE;
+  if (kind == NULL)
+    return TRUE;
+  gboolean table = strstr (kind, "TABLE") != NULL;
+  return is_count (tf_header_number (header, "PCOUNT"), 1e15) && is_count (tf_header_number (header, "GCOUNT"), 1e9)
+         && (!table || (is_count (tf_header_number (header, "TFIELDS"), 999) && axes > 1));
+}
+
 gboolean
-tf_fits_scan (const char *path, gboolean gzip, GError **error)
+tf_fits_scan (const char *path, gboolean gzip, int *n_sound, GError **error)
 {
   g_autoptr (GInputStream) stream = open_stream (path, gzip);
+  *n_sound = 1;
   for (guint hdu = 1; stream != NULL && hdu <= MAX_HDUS; hdu++)
     {
       g_autoptr (TfHeader) header = next_header (stream);
       const char *packed = header != NULL ? tf_header_get (header, "ZIMAGE") : NULL;
-      if (header == NULL)
+      if (header == NULL || !is_sound (header))
         return TRUE;
+      *n_sound = (int)hdu;
       if (packed != NULL && strcmp (packed, "T") == 0 && !check_tiles (header, path, hdu, error))
         return FALSE;
       double bytes = ceil (data_bytes (header) / BLOCK) * BLOCK;

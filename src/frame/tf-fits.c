@@ -3,29 +3,16 @@
  */
 #include "tf-fits-private.h"
 
-#include <fitsio.h>
 #include <glib/gi18n-lib.h>
 #include <math.h>
 #include <string.h>
 
 enum
 {
-  MAX_AXES = 9,
   MAX_HDUS = 200,
   MAX_SIDE = 1 << 17,
 };
 #define UNPACKED_LIMIT G_GINT64_CONSTANT (0x60000000) /* bytes of a gzip file unpacked in memory */
-
-struct _TfFits
-{
-  fitsfile *file;
-  char *path;
-  int hdu;
-  int bitpix, n_axes;
-  LONGLONG axes[MAX_AXES];
-  gboolean compressed, packed, gzip;
-  TfHeader *header;
-};
 
 static void
 fail (GError **error, const TfFits *fits, int status, const char *what)
@@ -128,21 +115,24 @@ take_picture (TfFits *fits)
   if (status != 0 || type != IMAGE_HDU)
     return FALSE;
   fits->compressed = fits_is_compressed_image (fits->file, &status);
-  fits_get_img_paramll (fits->file, MAX_AXES, &fits->bitpix, &fits->n_axes, fits->axes, &status);
+  fits_get_img_paramll (fits->file, TF_FITS_AXES, &fits->bitpix, &fits->n_axes, fits->axes, &status);
   fits_clear_errmsg ();
-  if (status != 0 || fits->n_axes < 2 || fits->n_axes > MAX_AXES)
+  if (status != 0 || fits->n_axes < 2 || fits->n_axes > TF_FITS_AXES)
     return FALSE;
   for (int k = 0; k < fits->n_axes; k++)
     if (fits->axes[k] < 1)
       return FALSE;
-  return fits->axes[0] <= MAX_SIDE && fits->axes[1] <= MAX_SIDE && read_header (fits);
+  if (fits->axes[0] > MAX_SIDE || fits->axes[1] > MAX_SIDE || !read_header (fits))
+    return FALSE;
+  tf_rice_look (fits);
+  return TRUE;
 }
 
 static gboolean
 move_to (TfFits *fits, int hdu)
 {
   int status = 0, type = 0;
-  if (fits_movabs_hdu (fits->file, hdu, &type, &status) != 0)
+  if (hdu > fits->n_sound || fits_movabs_hdu (fits->file, hdu, &type, &status) != 0)
     {
       fits_clear_errmsg ();
       return FALSE;
@@ -167,7 +157,11 @@ open_file (const char *path, GError **error)
   int status = 0;
   fits->path = g_strdup (path);
   fits->hdu = 1;
-  if (!check_start (fits, error) || !tf_fits_scan (path, fits->gzip, error))
+  if (!check_start (fits, error))
+    return NULL;
+  if (fits->packed && !fits->gzip)
+    fits->n_sound = MAX_HDUS; /* old compress: only CFITSIO unpacks it */
+  else if (!tf_fits_scan (path, fits->gzip, &fits->n_sound, error))
     return NULL;
   if (strlen (path) >= FLEN_FILENAME)
     {
@@ -196,7 +190,7 @@ tf_fits_open (const char *path, int hdu, GError **error)
     return g_steal_pointer (&fits);
   if (hdu > 0)
     g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-                 _ ("%s: HDU %d is not a picture; leave the HDU out to take the first picture of the file"), path, hdu);
+                 _ ("%s: HDU %d is not there, damaged or not a picture; leave the HDU out to take the first picture of the file"), path, hdu);
   else
     g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
                  _ ("%s holds no picture of two axes in any HDU; give a FITS image"), path);
@@ -264,6 +258,11 @@ tf_fits_check_size (const TfFits *fits, GError **error)
   gint64 file_size = fits->file->Fptr->filesize, held = file_size - data;
   double bytes = (double)fits->axes[0] * (double)fits->axes[1] * (double)count_planes (fits) * ABS (fits->bitpix) / 8;
   gboolean whole = fits->compressed ? end - 2880 < file_size && bytes < 1e13 : bytes <= (double)held;
+  if (status == 0 && whole && fits->rice.compressed && !fits->rice.by_rows && !tf_rice_check (fits))
+    {
+      fail (error, fits, DATA_DECOMPRESSION_ERR, _ ("a compressed tile is damaged; get the file again from its source"));
+      return FALSE;
+    }
   if (status == 0 && whole)
     return TRUE;
   g_autofree char *have = g_format_size ((guint64)MAX (held, 0)), *want = g_format_size ((guint64)MIN (bytes, 1e18));
@@ -279,14 +278,18 @@ tf_fits_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, 
 {
   int status = 0, any = 0;
   float none = __builtin_nanf ("");
-  LONGLONG at[MAX_AXES] = { 1, (LONGLONG)first + 1, 1, 1, 1, 1, 1, 1, 1 };
+  gboolean damaged = FALSE;
+  LONGLONG at[TF_FITS_AXES] = { 1, (LONGLONG)first + 1, 1, 1, 1, 1, 1, 1, 1 };
   LONGLONG rest = (LONGLONG)plane - 1;
   for (int k = 2; k < fits->n_axes; k++)
     {
       at[k] = rest % fits->axes[k] + 1;
       rest /= fits->axes[k];
     }
-  fits_read_pixll (fits->file, TFLOAT, at, fits->axes[0] * n, &none, out, &any, &status);
+  if (!fits->rice.by_rows)
+    fits_read_pixll (fits->file, TFLOAT, at, fits->axes[0] * n, &none, out, &any, &status);
+  else if (!tf_rice_read_rows (fits, plane, first, n, out, &damaged, &status) && damaged)
+    status = DATA_DECOMPRESSION_ERR;
   if (status == 0)
     return TRUE;
   fits_clear_errmsg ();

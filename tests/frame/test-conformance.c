@@ -155,6 +155,39 @@ test_compressions (void)
     }
 }
 
+/* Our own unpacking of tiles against CFITSIO's, bit for bit: quiet, loud, wrapping and constant rows. */
+static void
+test_own_unpacking (void)
+{
+  enum { W = 500, H = 120 };
+  g_autoptr (GRand) chance = g_rand_new_with_seed (17);
+  g_autofree float *pixels = g_new (float, W * H), *theirs = g_new (float, W * H);
+  g_autofree char *path = scratch_file ("rice.fits");
+  for (int way = 0; way < 4; way++)
+    {
+      TfFrameWrite how = { .bitpix = way % 2 ? 16 : 32, .bscale = way < 2 ? 0.1 : 1, .bzero = way == 1 ? 7 : 0, .blank = -32768,
+                           .has_blank = TRUE, .compress = TRUE };
+      for (int k = 0; k < W * H; k++)
+        {
+          double reach = pow (10, k / W % 10) / 10;
+          pixels[k] = k % 91 == 4 ? NAN : k / W % 7 == 3 ? 5 : (float)g_rand_double_range (chance, -reach, reach);
+        }
+      g_assert_true (tf_frame_write (path, NULL, pixels, W, H, &how, NULL));
+      g_autoptr (TfFits) fits = tf_fits_open (path, 0, NULL);
+      g_assert_true (fits != NULL && fits->rice.by_rows && tf_fits_check_size (fits, NULL) && tf_rice_check (fits));
+      g_assert_true (tf_fits_read_rows (fits, 1, 0, H, pixels, NULL));
+      int status = 0, any = 0;
+      float none = NAN;
+      fits_read_img (fits->file, TFLOAT, 1, W * H, &none, theirs, &any, &status);
+      g_assert_cmpint (status, ==, 0);
+      for (int k = 0; k < W * H; k++)
+        if (isnan (theirs[k]))
+          tf_check_nan ("a blank", (double)pixels[k]);
+        else
+          tf_check_near ("a pixel", (double)pixels[k], (double)theirs[k], 0);
+    }
+}
+
 /* A header that claims a terabyte over a few bytes, plain and compressed: a sentence, and no memory. */
 static void
 test_absurd_claims (void)
@@ -201,5 +234,6 @@ add_conformance_tests (void)
   g_test_add_data_func ("/frame/broken/every-file-ends-in-a-sentence", "broken", test_folder);
   g_test_add_func ("/frame/broken/the-right-sentence", test_broken);
   g_test_add_func ("/frame/conformance/five-compressions-read-the-same", test_compressions);
+  g_test_add_func ("/frame/conformance/own-unpacking-equals-cfitsio's", test_own_unpacking);
   g_test_add_func ("/frame/broken/absurd-claims-take-no-memory", test_absurd_claims);
 }
