@@ -140,6 +140,25 @@ tf_options_dup_canonical (const TfOption *table, const void *params, const char 
   return g_string_free (out, FALSE);
 }
 
+gboolean
+tf_options_read_canonical (const TfOption *table, void *params, const char *method, const char *text)
+{
+  g_auto (GStrv) words = g_strsplit (text, " ", -1);
+  tf_options_reset (table, params);
+  if (words[0] == NULL || strcmp (words[0], method) != 0)
+    return FALSE;
+  for (guint k = 1; words[k] != NULL; k++)
+    {
+      char *equals = strchr (words[k], '=');
+      if (equals == NULL)
+        return FALSE;
+      *equals = '\0';
+      if (!tf_options_set (table, params, words[k], equals + 1, NULL))
+        return FALSE;
+    }
+  return TRUE;
+}
+
 void
 tf_options_build_json (const TfOption *table, const void *params, JsonBuilder *builder)
 {

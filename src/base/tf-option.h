@@ -52,6 +52,8 @@ gboolean tf_options_set (const TfOption *table, void *params, const char *name, 
 char *tf_options_dup_value (const TfOption *option, const void *params);
 /** tf_options_dup_canonical: "METHOD name=value name=value ..." in table order: equal params give equal text. */
 char *tf_options_dup_canonical (const TfOption *table, const void *params, const char *method);
+/** tf_options_read_canonical: the inverse: defaults, then what @text names. FALSE when it is not that method's text. */
+gboolean tf_options_read_canonical (const TfOption *table, void *params, const char *method, const char *text);
 /** tf_options_build_json: the builder's next value: an object name -> value, in table order. */
 void tf_options_build_json (const TfOption *table, const void *params, JsonBuilder *builder);
 /** tf_options_read_json: sets what @object names; unknown names and bad values are errors. */

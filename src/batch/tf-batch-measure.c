@@ -6,6 +6,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-intake.h"
 #include "tf-json.h"
 
 /* One measure, as JSON and as a few lines for a person. */
@@ -70,4 +71,17 @@ tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
       g_string_append_printf (out, _ ("  caution: %s\n"), text);
     }
   return g_string_free (out, FALSE);
+}
+
+TfLedger *
+tf_batch_open_measured (const char *path, gboolean with_hints, GError **error)
+{
+  g_autoptr (TfLedger) ledger = tf_ledger_open (path, error);
+  if (ledger == NULL)
+    return NULL;
+  const TfRowQuery query = { .marks = TRUE, .hints = with_hints };
+  g_autoptr (TfWork) work = tf_batch_work_new (0);
+  if (!tf_intake_measure_even (ledger, tf_study_even_floor (ledger, NULL), &query, work, error))
+    return NULL;
+  return g_steal_pointer (&ledger);
 }

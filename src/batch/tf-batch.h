@@ -85,6 +85,10 @@ void tf_progress_begin (TfProgress *progress);
 void tf_progress_step (TfProgress *progress, guint done, guint total);
 void tf_progress_end (TfProgress *progress);
 
+/** tf_batch_open_measured: opens a ledger and sees to it that its rows are measured with the study's even floor, as far as their frames
+ * are there. NULL with an error. */
+TfLedger *tf_batch_open_measured (const char *path, gboolean with_hints, GError **error);
+
 /* -- measures ---------------------------------------------------------------------------------- */
 /** tf_batch_build_measure: the whole `measure` object of one frame as the builder's next value. @complexity: (nullable): null in JSON, and then
  * @figures may be NULL. */

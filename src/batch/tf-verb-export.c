@@ -33,7 +33,7 @@ tf_verb_export (int argc, char **argv)
   g_autoptr (GError) error = NULL;
   g_autoptr (GPtrArray) keep = NULL;
   g_autoptr (TfStudy) study = tf_study_new_default ();
-  g_autoptr (TfLedger) ledger = tf_ledger_open (argv[1], &error);
+  g_autoptr (TfLedger) ledger = tf_batch_open_measured (argv[1], with_hints, &error);
   g_autoptr (GArray) rows = ledger != NULL ? tf_export_rows (ledger, study, with_hints, &keep, &error) : NULL;
   if (rows == NULL || !tf_export_write (argv[2], rows, study, source != NULL ? source : argv[1], &error))
     {

@@ -82,7 +82,7 @@ tf_verb_laws (int argc, char **argv)
   study->sieve.with_hints = with_hints;
 
   g_autoptr (GError) error = NULL;
-  g_autoptr (TfLedger) ledger = tf_ledger_open (argv[1], &error);
+  g_autoptr (TfLedger) ledger = tf_batch_open_measured (argv[1], with_hints, &error);
   g_autoptr (TfFindings) findings = ledger != NULL ? tf_study_run (study, ledger, &error) : NULL;
   if (findings == NULL)
     {

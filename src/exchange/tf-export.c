@@ -46,7 +46,7 @@ tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPt
                 GError **error)
 {
   TfRowQuery query = { .marks = TRUE, .hints = with_hints };
-  GPtrArray *found = tf_ledger_rows (ledger, &query, error);
+  GPtrArray *found = tf_study_rows (ledger, &query, tf_study_even_floor (ledger, NULL), error);
   if (found == NULL)
     return NULL;
   g_autoptr (TfDivides) divides

@@ -12,26 +12,6 @@
 /* Relative difference that another compiler or machine may make in sums over a region; common practice, no source. */
 #define SAME 1e-6
 
-/* "METHOD name=value name=value": the params that made a row. */
-static gboolean
-read_method (const char *text, TfMeasureParams *params)
-{
-  g_auto (GStrv) words = g_strsplit (text, " ", -1);
-  tf_measure_params_init (params);
-  if (words[0] == NULL || strcmp (words[0], TF_MEASURE_METHOD) != 0)
-    return FALSE;
-  for (guint k = 1; words[k] != NULL; k++)
-    {
-      char *equals = strchr (words[k], '=');
-      if (equals == NULL)
-        return FALSE;
-      *equals = '\0';
-      if (equals[1] != '\0' && !tf_options_set (tf_measure_options, params, words[k], equals + 1, NULL))
-        return FALSE;
-    }
-  return TRUE;
-}
-
 static gboolean
 same (double a, double b)
 {
@@ -88,7 +68,7 @@ static void
 remeasure (TfLedger *ledger, const TfRow *row, Open *open, TfNotes *findings)
 {
   TfMeasureParams params;
-  if (!read_method (row->method, &params))
+  if (!tf_options_read_canonical (tf_measure_options, &params, TF_MEASURE_METHOD, row->method))
     return; /* a method of another version: its rows are not this one's to judge */
   TfFrame *frame = frame_of (ledger, row, open, findings);
   if (frame == NULL)

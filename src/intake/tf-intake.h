@@ -50,6 +50,9 @@ char **tf_intake_list (char *const *paths, GError **error);
 /** tf_intake_fill: FALSE with an error only when nothing could be done (ledger not writable) or cancelled. */
 gboolean tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *params, TfCancel *cancel,
                          TfIntakeFunc func, gpointer data, GError **error);
+/** tf_intake_measure_even: measures the rows of @query with one even floor, G, where that was not done yet, and keeps that beside what is there.
+ * Rows whose frame is gone, and a ledger that cannot be written, are left as they are. Stops between frames when cancelled. */
+gboolean tf_intake_measure_even (TfLedger *ledger, double floor_gauss, const TfRowQuery *query, const TfWork *work, GError **error);
 /** tf_intake_remeasure: re-measures at most @limit rows from their frames and adds "measure-differs" / "frame-missing" to @findings. */
 gboolean tf_intake_remeasure (TfLedger *ledger, guint limit, TfNotes *findings, GError **error);
 

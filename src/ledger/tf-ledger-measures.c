@@ -7,6 +7,7 @@
 #include "tf-ledger-private.h"
 
 #include <math.h>
+#include <glib/gi18n-lib.h>
 
 typedef enum
 {
@@ -181,4 +182,56 @@ tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const cha
   if (cid_out != NULL)
     *cid_out = g_steal_pointer (&cid);
   return key;
+}
+
+static char *
+frame_cid (TfLedger *ledger, gint64 frame, GError **error)
+{
+  char *cid = tf_text_value (ledger, error, "SELECT lower (hex (cid)) FROM frame WHERE id = ?1", "i", frame);
+  if (cid == NULL && error != NULL && *error == NULL)
+    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("the ledger %s has no frame %" G_GINT64_FORMAT), ledger->path,
+                 frame);
+  return cid;
+}
+
+gboolean
+tf_ledger_has_measure (TfLedger *ledger, gint64 frame, const TfOutline *outline, const char *method, TfMeasure *measure)
+{
+  g_return_val_if_fail (ledger != NULL && outline != NULL && method != NULL, FALSE);
+  g_autofree char *frame_id = frame_cid (ledger, frame, NULL);
+  g_autofree char *text = tf_outline_dup_text (outline);
+  g_autofree char *cid = frame_id != NULL ? tf_content_id ("tiltfield measure 1", frame_id, method, text, NULL) : NULL;
+  if (cid == NULL)
+    return FALSE;
+  g_autofree char *names = tf_measure_dup_columns ("e.");
+  g_autofree char *sql = g_strconcat ("SELECT ", names, " FROM measure e WHERE e.cid = ?1", NULL);
+  g_autoptr (sqlite3_stmt) query = tf_query (ledger, NULL, sql, "h", cid);
+  if (query == NULL || tf_query_step (ledger, query, NULL) <= 0)
+    return FALSE;
+  if (measure != NULL)
+    tf_measure_from_row (measure, query, 0);
+  return TRUE;
+}
+
+gboolean
+tf_ledger_add_measures (TfLedger *ledger, guint n, const gint64 *frames, TfOutline *const *outlines, char *const *methods,
+                        const TfMeasure *measures, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, FALSE);
+  if (n == 0)
+    return TRUE;
+  if (!tf_ledger_begin (ledger, error))
+    return FALSE;
+  for (guint k = 0; k < n; k++)
+    {
+      g_autofree char *cid = frame_cid (ledger, frames[k], error);
+      g_autofree char *text = tf_outline_dup_text (outlines[k]);
+      if (cid == NULL
+          || tf_measure_put (ledger, frames[k], cid, methods[k], text, &measures[k], TF_VERSION, NULL, error) == 0)
+        {
+          tf_ledger_rollback (ledger);
+          return FALSE;
+        }
+    }
+  return tf_ledger_commit (ledger, error);
 }

@@ -118,6 +118,13 @@ gboolean tf_ledger_has_hints (TfLedger *ledger, gint64 frame, const char *rule);
  * @n_frames, @n_hints: (out) (nullable): new ones */
 gboolean tf_ledger_gather (TfLedger *ledger, TfLedger *part, guint *n_frames, guint *n_hints, TfNotes *said, GError **error);
 
+/** tf_ledger_has_measure: whether that outline was measured on the frame by that method. @measure: (out) (nullable): cleared by the caller. */
+gboolean tf_ledger_has_measure (TfLedger *ledger, gint64 frame, const TfOutline *outline, const char *method, TfMeasure *measure);
+/** tf_ledger_add_measures: more measures of outlines that are there (another floor), in one transaction; each once.
+ * Parallel arrays of @n. */
+gboolean tf_ledger_add_measures (TfLedger *ledger, guint n, const gint64 *frames, TfOutline *const *outlines,
+                                 char *const *methods, const TfMeasure *measures, GError **error);
+
 /* -- marks ----------------------------------------------------------------------------------- */
 typedef enum
 {

@@ -78,3 +78,14 @@ tf_floor_kind_name (TfFloorKind kind)
 {
   return floor_names[CLAMP (kind, 0, 1)];
 }
+
+char *
+tf_measure_dup_even_method (const char *method, double floor_gauss, TfMeasureParams *params)
+{
+  g_return_val_if_fail (method != NULL && params != NULL, NULL);
+  if (!tf_options_read_canonical (tf_measure_options, params, TF_MEASURE_METHOD, method))
+    return NULL;
+  params->floor_kind = TF_FLOOR_EVEN;
+  params->floor_gauss = floor_gauss;
+  return tf_options_dup_canonical (tf_measure_options, params, TF_MEASURE_METHOD);
+}

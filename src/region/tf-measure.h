@@ -116,6 +116,9 @@ typedef struct
 } TfMeasure;
 
 void tf_measure_params_init (TfMeasureParams *params);
+/** tf_measure_dup_even_method: the canonical text of @method with the even floor @floor_gauss instead of its own; NULL when @method is not of
+ * this version. @params: (out): what it stands for. */
+char *tf_measure_dup_even_method (const char *method, double floor_gauss, TfMeasureParams *params);
 /** tf_measure_clear: frees what it owns and zeroes. */
 void tf_measure_clear (TfMeasure *measure);
 void tf_measure_copy (TfMeasure *to, const TfMeasure *from);

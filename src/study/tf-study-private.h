@@ -21,9 +21,6 @@ void tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const GP
 void tf_study_count (GHashTable *counts, const char *key);
 /** tf_study_has_floor: whether a row was measured with the even floor @gauss (within 0.5 %). */
 gboolean tf_study_has_floor (const TfRow *row, double gauss);
-/** tf_study_even_floor: the greatest, over instruments, of the median over that instrument's frames
- * of 3 sigma (mu 0.5)/0.5. */
-double tf_study_even_floor (TfLedger *ledger, GError **error);
 /** tf_study_what_if: (element-type TfWhatIf): the share and the slope under other choices, each
  * alone. */
 GArray *tf_study_what_if (const TfStudy *study, const TfSample *sample);

@@ -148,11 +148,9 @@ tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
   const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints };
-  g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &query, error);
+  double floor = tf_study_even_floor (ledger, NULL);
+  g_autoptr (GPtrArray) rows = tf_study_rows (ledger, &query, floor, error);
   if (rows == NULL || complain_empty (study, rows, ledger, error))
-    return NULL;
-  double floor = tf_study_even_floor (ledger, error);
-  if (error != NULL && *error != NULL)
     return NULL;
 
   g_autoptr (TfFindings) findings = g_new0 (TfFindings, 1);

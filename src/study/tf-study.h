@@ -86,6 +86,12 @@ typedef struct
   double mean_tilt_deg, median_tilt_deg;
   TfNotes *cautions; /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
 } TfFindings;
+/** tf_study_even_floor: the greatest, over instruments, of the median over that instrument's frames
+ * of 3 sigma (mu 0.5)/0.5, rounded to a whole gauss so that one more frame seldom moves it; G, NaN without frames. */
+double tf_study_even_floor (TfLedger *ledger, GError **error);
+/** tf_study_rows: ledger rows with the measures made with that even floor where they are there (intake makes
+ * them), else with their own. */
+GPtrArray *tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error);
 TfFindings *tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error);
 void tf_findings_free (TfFindings *findings);
 

@@ -266,6 +266,7 @@ def _():
     has(found, LAWS)
     has(found["sample"], ["rule", "regions", "passages", "marks", "hints", "left_out"])
     assert found["sample"]["marks"] == 0 and found["sample"]["hints"] > 0
+    assert found["sample"]["rows_with_other_floor"] == 0, "every row is measured with the study's one even floor"
     for row in found["hale"]:
         has(row, HALE)
         assert row["hemisphere"] in ("N", "S", "both")
@@ -287,6 +288,9 @@ def _():
         lines = [line for line in file if not line.startswith("#")]
     header = next(csv.reader(lines[:1]))
     assert header[: len(COLUMNS)] == COLUMNS, [pair for pair in zip(header, COLUMNS) if pair[0] != pair[1]][:3]
+    rows = list(csv.DictReader(lines))
+    floors = {(row["floor_kind"], row["floor_gauss"]) for row in rows}
+    assert len(rows) > 50 and len(floors) == 1 and floors.pop()[0] == "even", floors
     call("export", ledger, os.path.join(work, "out.xyz"), "--with-hints", code=2)
     call("export", ledger, os.path.join(work, "no-such-folder", "out.csv"), "--with-hints", code=3)
 

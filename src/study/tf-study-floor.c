@@ -1,0 +1,76 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <math.h>
+
+#include "tf-study-private.h"
+
+/* The study's one even floor, and the rows measured with it. */
+
+
+gboolean
+tf_study_has_floor (const TfRow *row, double gauss)
+{
+  return row->measure.floor_kind == TF_FLOOR_EVEN
+         && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
+}
+
+/* 3 sigma on the field used: a radial product and a map need no 1/mu. */
+static double
+frame_floor (const TfFrameRow *frame)
+{
+  gboolean as_is
+      = frame->info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&frame->info->geometry);
+  return 3.0 * frame->noise_gauss / (as_is ? 1.0 : 0.5);
+}
+
+double
+tf_study_even_floor (TfLedger *ledger, GError **error)
+{
+  g_autoptr (GPtrArray) frames = tf_ledger_frames (ledger, error);
+  if (frames == NULL)
+    return NAN;
+  g_autoptr (GHashTable) by_instrument
+      = g_hash_table_new_full (g_str_hash, g_str_equal, NULL, (GDestroyNotify)g_array_unref);
+  for (guint k = 0; k < frames->len; k++)
+    {
+      const TfFrameRow *frame = g_ptr_array_index (frames, k);
+      double floor = frame->info->kind == TF_KIND_MODEL_MAP ? NAN : frame_floor (frame);
+      if (!(floor > 0))
+        continue;
+      GArray *floors = g_hash_table_lookup (by_instrument, frame->info->instrument);
+      if (floors == NULL)
+        {
+          floors = g_array_new (FALSE, FALSE, sizeof (double));
+          g_hash_table_insert (by_instrument, frame->info->instrument, floors);
+        }
+      g_array_append_val (floors, floor);
+    }
+  GHashTableIter iter;
+  gpointer floors;
+  double greatest = NAN;
+  g_hash_table_iter_init (&iter, by_instrument);
+  while (g_hash_table_iter_next (&iter, NULL, &floors))
+    greatest = fmax (greatest,
+                     tf_median ((const double *)((GArray *)floors)->data, ((GArray *)floors)->len));
+  return greatest < 1 ? 1 : round (greatest);
+}
+GPtrArray *
+tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error)
+{
+  GPtrArray *rows = tf_ledger_rows (ledger, query, error);
+  for (guint k = 0; rows != NULL && floor_gauss > 0 && k < rows->len; k++)
+    {
+      TfRow *row = g_ptr_array_index (rows, k);
+      TfMeasureParams params;
+      TfMeasure even = { 0 };
+      g_autofree char *method = tf_measure_dup_even_method (row->method, floor_gauss, &params);
+      if (method == NULL || !tf_ledger_has_measure (ledger, row->frame, row->outline, method, &even))
+        continue;
+      tf_measure_clear (&row->measure);
+      row->measure = even;
+      g_free (row->method);
+      row->method = g_steal_pointer (&method);
+    }
+  return rows;
+}
