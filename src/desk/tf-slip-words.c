@@ -87,6 +87,24 @@ tf_words_dup_age (double seconds)
   return g_strdup_printf (_ ("%.0f y"), hours / 24 / 365.25);
 }
 
+char *
+tf_words_dup_short_source (const char *source)
+{
+  GString *text = g_string_new (NULL);
+  g_auto (GStrv) words = g_strsplit (source, " ", -1);
+  for (guint k = 0; words[k] != NULL; k++)
+    {
+      gunichar first = g_utf8_get_char (words[k]);
+      if (k > 0)
+        g_string_append_c (text, ' ');
+      if (g_unichar_isupper (first))
+        g_string_append_unichar (text, first);
+      else
+        g_string_append (text, words[k]);
+    }
+  return g_string_free (text, FALSE);
+}
+
 const char *
 tf_line_name (TfLine line)
 {
@@ -212,7 +230,7 @@ under_tilt (const TfReading *r)
       g_autofree char *e = tf_words_dup_signed (expected, 0), *s = tf_words_dup_number (scatter, 0);
       g_string_append_printf (text, _ ("expected %s° ± %s° (Joy)\n"), e, s);
     }
-  g_string_append_printf (text, _ ("noise %s · outline %s · floor %s"), noise, outline, floor);
+  g_string_append_printf (text, _ ("noise %s, outline %s, floor %s"), noise, outline, floor);
   return g_string_free (text, FALSE);
 }
 

@@ -46,6 +46,8 @@ char *tf_words_dup_place (const TfMeasure *measure);
 char *tf_words_dup_longitude (const TfMeasure *measure);
 /** tf_words_split_verdict: the sentence parted into what is said and why: "breaks Hale's law" and "cycle 24, sure: ..." */
 void tf_words_split_verdict (const char *sentence, char **said, char **why);
+/** tf_words_dup_short_source: "Stenflo & Kosovichev 2012" as "S & K 2012" */
+char *tf_words_dup_short_source (const char *source);
 /** tf_words_dup_age: "2 h", "3 d", "12 y" */
 char *tf_words_dup_age (double seconds);
 

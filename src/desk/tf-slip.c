@@ -30,6 +30,7 @@ struct _TfSlip
   TfSession *session;
   TfRegionItem *noted; /* whose note stands in the entry */
   gboolean setting;
+  char *joy_name; /* under the dial */
 };
 
 G_DEFINE_FINAL_TYPE (TfSlip, tf_slip, GTK_TYPE_WIDGET)
@@ -116,7 +117,7 @@ show_dial (TfSlip *self, const TfMeasure *m, const TfVerdict *verdict)
   TfDial dial = { .bearing_deg = m->axis_bearing_deg, .sigma_deg = m->tilt_terms.total, .lat_deg = m->lat_deg,
                   .leading_polarity = m->leading_polarity, .expected = verdict->expected };
   tf_joy_expected (m->lat_deg, m->separation_deg, &dial.joy_deg, &dial.joy_scatter_deg);
-  dial.joy_name = tf_joy_relations[0].name;
+  dial.joy_name = self->joy_name;
   memcpy (dial.witnesses, m->witnesses, sizeof dial.witnesses);
   tf_dial_view_set (self->dial, &dial);
 }
@@ -306,6 +307,13 @@ dispose (GObject *object)
 }
 
 static void
+finalize (GObject *object)
+{
+  g_free (TF_SLIP (object)->joy_name);
+  G_OBJECT_CLASS (tf_slip_parent_class)->finalize (object);
+}
+
+static void
 bind_children (GtkWidgetClass *widget)
 {
   gtk_widget_class_bind_template_child (widget, TfSlip, stack);
@@ -345,6 +353,7 @@ tf_slip_class_init (TfSlipClass *klass)
 {
   GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
   G_OBJECT_CLASS (klass)->dispose = dispose;
+  G_OBJECT_CLASS (klass)->finalize = finalize;
   g_type_ensure (TF_TYPE_DIAL_VIEW);
   g_type_ensure (TF_TYPE_VERDICT_SIGN);
   g_type_ensure (TF_TYPE_SLIP_FRAME);
@@ -361,6 +370,7 @@ static void
 tf_slip_init (TfSlip *self)
 {
   gtk_widget_init_template (GTK_WIDGET (self));
+  self->joy_name = tf_words_dup_short_source (tf_joy_relations[0].name);
   for (guint k = 0; k < TF_N_LINES; k++)
     {
       self->row[k] = g_object_new (TF_TYPE_SLIP_ROW, NULL);

@@ -12,6 +12,7 @@
 #include "tf-roll.h"
 #include "tf-slip-words.h"
 #include "tf-slip.h"
+#include "tf-widget-style.h"
 #include "tf-window-private.h"
 #include "tf-wings-view.h"
 
@@ -25,6 +26,7 @@ struct _TfWindow
   GtkButton *person_button;
   GtkRevealer *problem_bar, *ledger_bar, *feed_bar, *loose_bar;
   GtkWidget *wings_offer;
+  AdwClamp *roll_clamp, *slip_clamp;
   TfRoll *roll;
   TfPlatePane *plate_pane;
   TfSlip *slip;
@@ -35,7 +37,7 @@ struct _TfWindow
 
 G_DEFINE_FINAL_TYPE (TfWindow, tf_window, ADW_TYPE_APPLICATION_WINDOW)
 
-enum { AGE_SECONDS = 30, TOAST_SECONDS = 4 };
+enum { AGE_SECONDS = 30, TOAST_SECONDS = 4, ROLL_WIDTH = 166, SLIP_WIDTH = 304 };
 static const char sqlite_magic[] = "SQLite format 3";
 
 TfSession *
@@ -197,6 +199,20 @@ connect_session (TfWindow *self)
   g_signal_connect_object (session, "message", G_CALLBACK (message), self, 0);
 }
 
+/* The panels have a width of their own, which grows with the user's text but slower, so that the plate keeps its room. */
+static void
+set_widths (TfWindow *self)
+{
+  double share = fmin (fmax (tf_widget_text_size (GTK_WIDGET (self)) / 13.5, 0.9), 2.5);
+  int roll = (int)(ROLL_WIDTH * (0.55 + 0.45 * share)), slip = (int)(SLIP_WIDTH * (0.6 + 0.4 * share));
+  adw_clamp_set_maximum_size (self->roll_clamp, roll);
+  adw_clamp_set_tightening_threshold (self->roll_clamp, roll);
+  adw_clamp_set_maximum_size (self->slip_clamp, slip);
+  adw_clamp_set_tightening_threshold (self->slip_clamp, slip);
+  gtk_widget_set_size_request (GTK_WIDGET (self->roll), roll, -1);
+  gtk_widget_set_size_request (GTK_WIDGET (self->slip), slip, -1);
+}
+
 /* -- opening ------------------------------------------------------------------------------------------------ */
 
 gboolean
@@ -291,6 +307,8 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfWindow, loose_bar);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_offer);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_words);
+  gtk_widget_class_bind_template_child (widget, TfWindow, roll_clamp);
+  gtk_widget_class_bind_template_child (widget, TfWindow, slip_clamp);
   gtk_widget_class_bind_template_child (widget, TfWindow, roll);
   gtk_widget_class_bind_template_child (widget, TfWindow, plate_pane);
   gtk_widget_class_bind_template_child (widget, TfWindow, slip);
@@ -335,6 +353,10 @@ tf_window_init (TfWindow *self)
   tf_slip_set_session (self->slip, self->session);
   tf_wings_view_set_session (self->wings, self->session);
   self->age_timer = g_timeout_add_seconds (AGE_SECONDS, age_tick, self);
+  GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));
+  g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (set_widths), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (set_widths), self, G_CONNECT_SWAPPED);
+  set_widths (self);
   ledger_changed (self);
   points_changed (self);
 }
