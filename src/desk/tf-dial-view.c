@@ -36,7 +36,7 @@ measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minim
          int *natural_baseline)
 {
   double text = tf_widget_text_size (widget) / 14.0; /* room for the labels at larger text */
-  *minimum = *natural = (int)(HEIGHT * fmax (1, 0.5 + text / 2));
+  *minimum = *natural = (int)(HEIGHT * fmax (1, 0.3 + 0.7 * text));
 }
 
 void

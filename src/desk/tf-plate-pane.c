@@ -14,6 +14,7 @@ struct _TfPlatePane
   TfPlate *plate;
   GtkLabel *readout, *trouble, *tool_words;
   GtkWidget *tools, *over_progress, *trouble_box;
+  GtkBox *foot;
   GtkLabel *progress_words;
   GtkProgressBar *progress;
   GtkMenuButton *range_button;
@@ -24,6 +25,8 @@ struct _TfPlatePane
 };
 
 G_DEFINE_FINAL_TYPE (TfPlatePane, tf_plate_pane, GTK_TYPE_WIDGET)
+
+static const double large_text = 19; /* px */
 
 static void
 view_changed (TfPlatePane *self)
@@ -138,6 +141,7 @@ tf_plate_pane_class_init (TfPlatePaneClass *klass)
   gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/plate-pane.ui");
   gtk_widget_class_bind_template_child (widget, TfPlatePane, plate);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, readout);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, foot);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, tools);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, tool_words);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, trouble_box);
@@ -151,10 +155,25 @@ tf_plate_pane_class_init (TfPlatePaneClass *klass)
   gtk_widget_class_bind_template_callback (widget, range_moved);
 }
 
+/* With large text the read-out stands over the controls. */
+static void
+text_changed (TfPlatePane *self)
+{
+  gboolean large = tf_widget_text_size (GTK_WIDGET (self)) > large_text;
+  gtk_orientable_set_orientation (GTK_ORIENTABLE (self->foot),
+                                  large ? GTK_ORIENTATION_VERTICAL : GTK_ORIENTATION_HORIZONTAL);
+}
+
 static void
 tf_plate_pane_init (TfPlatePane *self)
 {
   gtk_widget_init_template (GTK_WIDGET (self));
+  GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));
+  g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (text_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (text_changed), self, G_CONNECT_SWAPPED);
+  text_changed (self);
   gtk_scale_set_format_value_func (self->range, (GtkScaleFormatValueFunc)(void (*) (void))format_range, self, NULL);
   g_signal_connect_object (self->plate, "notify::readout", G_CALLBACK (readout_changed), self, G_CONNECT_SWAPPED);
+  readout_changed (self);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Plate with its tools"), -1);
 }

@@ -35,7 +35,7 @@ dup_readout (TfPlate *self)
 {
   TfFrame *frame = self->session != NULL ? tf_session_get_frame (self->session) : NULL;
   if (frame == NULL || !self->pointer_in)
-    return g_strdup ("");
+    return g_strdup (_ ("point at the Sun for its place and field"));
   TfPlace place;
   double x, y;
   const TfView *view = tf_session_get_view (self->session);
@@ -253,7 +253,7 @@ tf_plate_class_init (TfPlateClass *klass)
 static void
 tf_plate_init (TfPlate *self)
 {
-  self->readout = g_strdup ("");
+  self->readout = dup_readout (self);
   gtk_widget_set_focusable (GTK_WIDGET (self), TRUE);
   gtk_widget_set_overflow (GTK_WIDGET (self), GTK_OVERFLOW_HIDDEN);
   gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Plate"), -1);

@@ -20,6 +20,8 @@ tf_words_dup_number (double value, guint decimals)
     return g_strdup ("—");
   char form[8];
   g_snprintf (form, sizeof form, ".%uf", decimals);
+  if (fabs (value) < 0.5 * pow (10, -(double)decimals))
+    value = 0; /* no minus before nothing */
   g_autofree char *number = tf_number_dup_form (value, form, TRUE);
   return number[0] == '-' ? g_strconcat ("−", number + 1, NULL) : g_steal_pointer (&number);
 }
@@ -28,7 +30,7 @@ char *
 tf_words_dup_signed (double value, guint decimals)
 {
   g_autofree char *number = tf_words_dup_number (value, decimals);
-  return value > 0 ? g_strconcat ("+", number, NULL) : g_steal_pointer (&number);
+  return value >= 0.5 * pow (10, -(double)decimals) ? g_strconcat ("+", number, NULL) : g_steal_pointer (&number);
 }
 
 char *

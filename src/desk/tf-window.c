@@ -112,6 +112,16 @@ show_page (TfWindow *self)
   gtk_revealer_set_reveal_child (self->loose_bar, n > 0 && tf_session_get_ledger_path (self->session) == NULL);
 }
 
+/* A bar stands only while there is something in it. */
+static void
+show_bar (GtkRevealer *bar, GtkLabel *label, const char *text)
+{
+  gtk_widget_set_visible (GTK_WIDGET (bar), text != NULL);
+  if (text != NULL)
+    gtk_label_set_label (label, text);
+  gtk_revealer_set_reveal_child (bar, text != NULL);
+}
+
 static void
 ledger_changed (TfWindow *self)
 {
@@ -123,8 +133,7 @@ ledger_changed (TfWindow *self)
   g_autofree char *title = g_strdup_printf (name != NULL ? "%s · Tiltfield" : "Tiltfield", name);
   gtk_window_set_title (GTK_WINDOW (self), title);
   gtk_button_set_label (self->person_button, person != NULL ? person : _ ("who?"));
-  gtk_label_set_label (self->ledger_problem, problem != NULL ? problem : "");
-  gtk_revealer_set_reveal_child (self->ledger_bar, problem != NULL);
+  show_bar (self->ledger_bar, self->ledger_problem, problem);
   if (tf_session_has_ledger (self->session))
     tf_preferences_set ("ledger", path);
   show_page (self);
@@ -148,11 +157,8 @@ status_changed (TfWindow *self)
   if (problem != NULL && pending > 1)
     text = g_strdup_printf (ngettext ("%s %u more deed waits behind it.", "%s %u more deeds wait behind it.", pending - 1),
                             problem, pending - 1);
-  gtk_label_set_label (self->problem, text != NULL ? text : problem != NULL ? problem : "");
-  gtk_revealer_set_reveal_child (self->problem_bar, problem != NULL);
-  const char *trouble = tf_session_get_feed_trouble (self->session);
-  gtk_label_set_label (self->feed_trouble, trouble != NULL ? trouble : "");
-  gtk_revealer_set_reveal_child (self->feed_bar, trouble != NULL);
+  show_bar (self->problem_bar, self->problem, text != NULL ? text : problem);
+  show_bar (self->feed_bar, self->feed_trouble, tf_session_get_feed_trouble (self->session));
   show_page (self);
   tf_window_update_actions (self);
 }
@@ -358,6 +364,7 @@ tf_window_init (TfWindow *self)
   g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (set_widths), self, G_CONNECT_SWAPPED);
   set_widths (self);
   ledger_changed (self);
+  status_changed (self);
   points_changed (self);
 }
 

@@ -11,7 +11,7 @@ static void
 signs (void)
 {
   g_autofree char *plus = tf_words_dup_signed (7.24, 1), *minus = tf_words_dup_signed (-24.06, 1);
-  g_autofree char *zero = tf_words_dup_signed (0, 1), *none = tf_words_dup_signed (NAN, 1);
+  g_autofree char *zero = tf_words_dup_signed (-0.04, 1), *none = tf_words_dup_signed (NAN, 1);
   g_assert_cmpstr (plus, ==, "+7.2");
   g_assert_cmpstr (minus, ==, "−24.1");
   g_assert_cmpstr (zero, ==, "0.0");
