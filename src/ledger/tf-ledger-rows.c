@@ -47,18 +47,22 @@ dup_column (sqlite3_stmt *query, int column)
   return g_strdup (tf_column_text (query, column));
 }
 
-static TfRow *
-read_row (TfLedger *ledger, sqlite3_stmt *query, GError **error)
+static TfOutline *
+read_outline (TfLedger *ledger, const char *text, GError **error)
 {
   GError *problem = NULL;
-  g_autoptr (TfOutline) outline = tf_outline_from_text (tf_column_text (query, 12), &problem);
-  if (outline == NULL)
-    {
-      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DAMAGED, _ ("the ledger %s: an outline cannot be read: %s; run check"),
-                   ledger->path, problem->message);
-      g_error_free (problem);
-      return NULL;
-    }
+  TfOutline *outline = tf_outline_from_text (text, &problem);
+  if (outline != NULL)
+    return outline;
+  g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DAMAGED, _ ("the ledger %s: an outline cannot be read: %s; run check"),
+               ledger->path, problem->message);
+  g_error_free (problem);
+  return NULL;
+}
+
+static TfRow *
+read_row (sqlite3_stmt *query)
+{
   TfRow *row = g_new0 (TfRow, 1);
   row->mark = sqlite3_column_int64 (query, 0);
   row->is_hint = sqlite3_column_int (query, 1);
@@ -73,7 +77,6 @@ read_row (TfLedger *ledger, sqlite3_stmt *query, GError **error)
   row->mw_class = dup_column (query, 9);
   row->person = dup_column (query, 10);
   row->unipolar = sqlite3_column_int (query, 11);
-  row->outline = g_steal_pointer (&outline);
   row->frame_path = dup_column (query, FIRST_COMMON);
   row->frame_checksum = dup_column (query, FIRST_COMMON + 1);
   row->method = dup_column (query, FIRST_COMMON + 2);
@@ -104,7 +107,7 @@ tf_row_free (TfRow *row)
 
 /* @where is appended; ?1 is @key. */
 static gboolean
-read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, GPtrArray *rows, GError **error)
+read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, gboolean outlines, GPtrArray *rows, GError **error)
 {
   g_autofree char *measured = tf_measure_dup_columns ("e.");
   g_autofree char *sql = g_strconcat ("SELECT ", hints ? HINT_COLUMNS : MARK_COLUMNS, measured,
@@ -113,10 +116,10 @@ read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, GPtr
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     {
-      TfRow *row = read_row (ledger, query, error);
-      if (row == NULL)
-        return FALSE;
+      TfRow *row = read_row (query);
       g_ptr_array_add (rows, row);
+      if (outlines && (row->outline = read_outline (ledger, tf_column_text (query, 12), error)) == NULL)
+        return FALSE;
     }
   return more == 0;
 }
@@ -149,10 +152,10 @@ tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error)
   g_return_val_if_fail (ledger != NULL && query != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
   if (query->marks
-      && !read_rows (ledger, FALSE, " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)", query->frame, rows, error))
+      && !read_rows (ledger, FALSE, " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)", query->frame, !query->no_outlines, rows, error))
     return NULL;
   if (query->hints
-      && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame, rows, error))
+      && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame, !query->no_outlines, rows, error))
     return NULL;
   g_ptr_array_sort (rows, compare_rows);
   return g_steal_pointer (&rows);
@@ -163,7 +166,7 @@ tf_ledger_row (TfLedger *ledger, gint64 mark, gboolean is_hint, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
-  if (!read_rows (ledger, is_hint, is_hint ? " WHERE h.id = ?1" : " WHERE m.id = ?1", mark, rows, error))
+  if (!read_rows (ledger, is_hint, is_hint ? " WHERE h.id = ?1" : " WHERE m.id = ?1", mark, TRUE, rows, error))
     return NULL;
   if (rows->len == 0)
     {

@@ -73,7 +73,7 @@
   " letter TEXT NOT NULL, born INTEGER NOT NULL) STRICT;"                                                                      \
   "CREATE TABLE act (replica INTEGER NOT NULL REFERENCES replica (no), seq INTEGER NOT NULL CHECK (seq > 0),"                  \
   " clock INTEGER NOT NULL, wall INTEGER NOT NULL, kind TEXT NOT NULL, subject BLOB NOT NULL, body BLOB NOT NULL,"             \
-  " before BLOB NOT NULL, hash BLOB NOT NULL, PRIMARY KEY (replica, seq)) STRICT, WITHOUT ROWID;"                              \
+  " before BLOB NOT NULL, hash BLOB NOT NULL, PRIMARY KEY (replica, seq)) STRICT;"                                             \
   "CREATE INDEX act_subject ON act (subject, clock);"                                                                          \
   "CREATE INDEX act_clock ON act (clock);"                                                                                     \
   "CREATE TABLE after (replica INTEGER NOT NULL, seq INTEGER NOT NULL, p_replica INTEGER NOT NULL, p_seq INTEGER NOT NULL,"    \

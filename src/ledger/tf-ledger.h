@@ -180,7 +180,7 @@ typedef struct
   char *frame_path, *frame_checksum, *method, *program_version, *person, *instrument, *vantage;
   const char *kind;     /* of the frame, static */
   gboolean unipolar;    /* hints */
-  TfOutline *outline;
+  TfOutline *outline;   /* NULL when the query asked for none */
   TfMeasure measure;    /* time, floors, poles, tilt, cautions ... */
   char *time_source;
   gboolean simulated;
@@ -192,6 +192,7 @@ typedef struct
   gboolean marks, hints; /* which */
   gint64 frame;          /* 0: all */
   gboolean judged_hints; /* hints that a person kept or dropped, too */
+  gboolean no_outlines;  /* outline is NULL: several times faster where it is not asked for (studies, tables) */
 } TfRowQuery;
 /** tf_ledger_rows: (element-type TfRow) live marks and open hints in time order. */
 GPtrArray *tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error);

@@ -107,6 +107,9 @@ test_hint_is_judged (Fixture *f, gconstpointer data)
   g_assert_false (row->done);
   g_autoptr (GPtrArray) all = tf_ledger_rows (f->ledger, &(TfRowQuery){ .hints = TRUE, .judged_hints = TRUE }, &error);
   g_assert_cmpuint (all->len, ==, 3);
+  g_autoptr (GPtrArray) bare = tf_ledger_rows (f->ledger, &(TfRowQuery){ .marks = TRUE, .no_outlines = TRUE }, &error);
+  g_assert_cmpuint (bare->len, ==, 1);
+  g_assert_null (((TfRow *)g_ptr_array_index (bare, 0))->outline);
   g_assert_true (tf_ledger_withdraw (f->ledger, mark, person, &error));
   fixture_count (f->ledger, 0, 2);
   fixture_check (f->ledger, "");
