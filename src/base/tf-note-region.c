@@ -22,6 +22,9 @@ const TfNoteKind tf_note_kinds_region[] = {
   { "complexity-near-limb", TF_NOTE_REASON,
     N_ ("Complexity is not given at mu {0:.2f}, below {1:.2f}: false inversion lines appear there. Take a frame nearer central meridian, or "
         "ask for it anyway.") },
+  { "complexity-no-values", TF_NOTE_REASON,
+    N_ ("Complexity is not given: the frame has no values inside the outline at the reference resolution of {0:.1f} Mm. Draw it larger, or "
+        "choose another frame.") },
   { "delta-apart", TF_NOTE_REASON,
     N_ ("No delta candidate: the nearest strong cores of opposite polarity are {0:.0f} Mm apart, more than {1:.0f} Mm.") },
   { "delta-candidate", TF_NOTE_CAUTION,

@@ -79,12 +79,12 @@ measure (Words *words, const char *path)
   g_autoptr (TfOutline) outline = frame != NULL ? read_outline (words, frame, &error) : NULL;
   g_auto (TfMeasure) m = { 0 };
   g_auto (TfComplexity) complexity = { 0 };
-  if (outline == NULL || !tf_measure_region (&m, frame, outline, &words->params, &error)
-      || !tf_complexity_region (&complexity, frame, outline, &words->params, &words->figures, &error))
+  if (outline == NULL || !tf_measure_region (&m, frame, outline, &words->params, &error))
     {
       tf_batch_say_error (error);
       return g_error_matches (error, G_OPTION_ERROR, G_OPTION_ERROR_BAD_VALUE) ? TF_EXIT_CALL : TF_EXIT_NOTHING;
     }
+  tf_complexity_region (&complexity, frame, outline, &words->params, &words->figures);
   g_autoptr (TfStudy) study = tf_study_new_default ();
   if (words->json)
     {

@@ -6,8 +6,6 @@
 #include <math.h>
 #include <string.h>
 
-#include <glib/gi18n-lib.h>
-
 #include "tf-complexity-private.h"
 #include "tf-constants.h"
 
@@ -128,26 +126,21 @@ has_inside (const TfTraced *t)
   return FALSE;
 }
 
-gboolean
+void
 tf_complexity_region (TfComplexity *c, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *measure,
-                      const TfComplexityParams *params, GError **error)
+                      const TfComplexityParams *params)
 {
-  g_return_val_if_fail (c != NULL && frame != NULL && outline != NULL && measure != NULL && params != NULL, FALSE);
+  g_return_if_fail (c != NULL && frame != NULL && outline != NULL && measure != NULL && params != NULL);
   set_nothing (c, measure, params);
   g_autoptr (TfOutline) here = tf_mask_outline (frame, outline, (guint)measure->law);
   c->refusal = find_refusal (c, frame, here, params);
   if (c->refusal != NULL)
-    return TRUE;
+    return;
   g_autoptr (TfTraced) t = tf_traced_new (frame, here, measure, params, 0.0, 0.0, TRUE);
   if (!has_inside (t))
     {
-      const char *path = tf_frame_get_path (frame);
-      tf_complexity_clear (c);
-      g_set_error (error, TF_REGION_ERROR, TF_REGION_ERROR_EMPTY,
-                   _ ("No value of the frame %s lies inside the outline: complexity cannot be worked out. Draw it elsewhere or choose "
-                      "another frame."),
-                   path[0] != '\0' ? path : _ ("in memory"));
-      return FALSE;
+      c->refusal = tf_note_new ("complexity-no-values", "d", params->fwhm_mm);
+      return;
     }
   c->given = TRUE;
   set_lines (c, t, params);
@@ -156,5 +149,4 @@ tf_complexity_region (TfComplexity *c, const TfFrame *frame, const TfOutline *ou
   c->pieces = tf_complexity_pieces (t, params->strong_gauss, measure->piece_share);
   tf_complexity_delta (c, t, params);
   add_cautions (c, t, params);
-  return TRUE;
 }

@@ -64,12 +64,12 @@ typedef struct
 } TfComplexity;
 
 /**
- * tf_complexity_region: of @outline (at any time; carried to the frame's) on @frame.
+ * tf_complexity_region: of @outline (at any time; carried to the frame's) on @frame. Near the limb, on a map and where the frame has no values
+ * the figures are not given and the refusal says why.
  * @measure: field used, scale, rotation law, least mu and piece share are taken from it
- * Returns: FALSE with TF_REGION_ERROR_EMPTY when no value lies inside. Not given (near the limb, a map) is an answer: TRUE, given FALSE.
  */
-gboolean tf_complexity_region (TfComplexity *complexity, const TfFrame *frame, const TfOutline *outline,
-                               const TfMeasureParams *measure, const TfComplexityParams *params, GError **error);
+void tf_complexity_region (TfComplexity *complexity, const TfFrame *frame, const TfOutline *outline,
+                           const TfMeasureParams *measure, const TfComplexityParams *params);
 void tf_complexity_clear (TfComplexity *complexity);
 void tf_complexity_copy (TfComplexity *to, const TfComplexity *from);
 

@@ -16,8 +16,9 @@ typedef double (*BuilderFunc) (const double unit[3], const double to_observer[3]
 TfFrame *builder_frame_func (const BuilderFrame *how, BuilderFunc func, gconstpointer data);
 /** builder_to_observer: unit vector from a place of the Sun towards the frame's observer. */
 void builder_to_observer (const TfGeometry *g, const double unit[3], double to_observer[3]);
-/** builder_complexity: measured with default options but for @params; errors fail the test. */
+/** builder_complexity: measured with default options but for @params. */
 void builder_complexity (TfComplexity *c, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params);
 
 void add_inversion_tests (void);
 void add_complexity_tests (void);
+void add_potential_tests (void);

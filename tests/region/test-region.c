@@ -17,5 +17,6 @@ main (int argc, char **argv)
   add_noise_tests ();
   add_outline_tests ();
   add_real_tests ();
+  add_potential_tests ();
   return g_test_run ();
 }
