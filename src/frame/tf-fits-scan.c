@@ -7,6 +7,8 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-number.h"
+
 /* A walk over the headers of a file before CFITSIO sees it: it divides by the tile sizes that a compressed HDU claims
  * (4.2.0: ZTILE1 = 0 ends the program), so these are held against the picture and the table here. */
 
@@ -42,13 +44,13 @@ has_end (const char *block)
   return FALSE;
 }
 
-/* The next header; NULL at the end of the file or when it is not one. */
+/* The next header, its cards as they stand in @bytes; NULL at the end of the file or when it is not one. */
 static TfHeader *
-next_header (GInputStream *stream)
+next_header (GInputStream *stream, GByteArray *bytes)
 {
-  g_autoptr (GByteArray) bytes = g_byte_array_new ();
   char block[BLOCK];
   gsize n = 0;
+  g_byte_array_set_size (bytes, 0);
   for (guint k = 0; k < MAX_BLOCKS; k++)
     {
       if (!g_input_stream_read_all (stream, block, BLOCK, &n, NULL, NULL) || n < BLOCK)
@@ -134,40 +136,59 @@ check_tiles (const TfHeader *header, const char *path, guint hdu, GError **error
   return TRUE;
 }
 
+/* Card @k is @keyword with a whole number from 0 to @most. */
 static gboolean
-is_count (double value, double most)
+is_count (const GByteArray *bytes, guint k, const char *keyword, double most, double *value)
 {
-  return value >= 0 && value <= most && fabs (value - rint (value)) < 1e-9;
+  char card[81] = "", name[12];
+  gint64 number;
+  if ((k + 1) * 80 > bytes->len)
+    return FALSE;
+  memcpy (card, bytes->data + (gsize)k * 80, 80);
+  g_snprintf (name, sizeof name, "%-8s= ", keyword);
+  if (strncmp (card, name, 10) != 0)
+    return FALSE;
+  char *slash = strchr (card, '/');
+  if (slash != NULL)
+    *slash = '\0';
+  *value = tf_number_read_int (card + 10, &number) ? (double)number : NAN;
+  return *value >= 0 && *value <= most;
 }
 
-/* The words that CFITSIO sizes an HDU by are counts (4.2.0 goes on with what was in memory where one is not). */
+/* The words that CFITSIO sizes an extension by stand in their order and are counts (4.2.0 goes on with what was in memory
+ * where one is not). */
 static gboolean
-is_sound (const TfHeader *header)
+is_sound (const GByteArray *bytes)
 {
-  const char *kind = tf_header_get (header, "XTENSION");
-  double axes = tf_header_number (header, "NAXIS"), bits = fabs (tf_header_number (header, "BITPIX"));
-  if (!is_count (axes, 999) || !(bits >= 8 && bits <= 64))
+  double axes, value;
+  guint k = 3;
+  if (memcmp (bytes->data, "XTENSION", 8) != 0)
+    return TRUE; /* the first: CFITSIO refuses it properly */
+  gboolean table = memmem (bytes->data + 10, 20, "TABLE", 5) != NULL;
+  if (!is_count (bytes, 2, "NAXIS", 999, &axes))
     return FALSE;
-  for (guint k = 1; k <= axes; k++)
-    if (!is_count (indexed (header, "NAXIS", k), 1e15))
-      return FALSE;
-  if (kind == NULL)
-    return TRUE;
-  gboolean table = strstr (kind, "TABLE") != NULL;
-  return is_count (tf_header_number (header, "PCOUNT"), 1e15) && is_count (tf_header_number (header, "GCOUNT"), 1e9)
-         && (!table || (is_count (tf_header_number (header, "TFIELDS"), 999) && axes > 1));
+  for (guint axis = 1; axis <= axes; axis++)
+    {
+      char keyword[12];
+      g_snprintf (keyword, sizeof keyword, "NAXIS%u", axis);
+      if (!is_count (bytes, k++, keyword, 1e15, &value))
+        return FALSE;
+    }
+  return is_count (bytes, k, "PCOUNT", 1e15, &value) && is_count (bytes, k + 1, "GCOUNT", 1e9, &value)
+         && (!table || is_count (bytes, k + 2, "TFIELDS", 999, &value));
 }
 
 gboolean
 tf_fits_scan (const char *path, gboolean gzip, int *n_sound, GError **error)
 {
   g_autoptr (GInputStream) stream = open_stream (path, gzip);
+  g_autoptr (GByteArray) cards = g_byte_array_new ();
   *n_sound = 1;
   for (guint hdu = 1; stream != NULL && hdu <= MAX_HDUS; hdu++)
     {
-      g_autoptr (TfHeader) header = next_header (stream);
+      g_autoptr (TfHeader) header = next_header (stream, cards);
       const char *packed = header != NULL ? tf_header_get (header, "ZIMAGE") : NULL;
-      if (header == NULL || !is_sound (header))
+      if (header == NULL || !is_sound (cards))
         return TRUE;
       *n_sound = (int)hdu;
       if (packed != NULL && strcmp (packed, "T") == 0 && !check_tiles (header, path, hdu, error))
