@@ -35,6 +35,18 @@ tf_field_name (TfFieldKind field)
   return field == TF_FIELD_LOS ? "los" : field == TF_FIELD_RADIAL ? "radial" : "unknown";
 }
 
+TfTime
+tf_frame_info_column_time (const TfFrameInfo *info, double x)
+{
+  const TfGeometry *g = &info->geometry;
+  if (info->kind != TF_KIND_MAP)
+    return info->time;
+  if (isnan (info->rotation_number) || !(x >= 0.5 && x <= g->width + 0.5))
+    return TF_TIME_UNKNOWN;
+  double lon = tf_wrap_360 (g->crval_deg[0]) + g->cd[0][0] * (x - g->crpix[0]); /* runs on */
+  return tf_carrington_time (info->rotation_number + 1 - lon / 360);
+}
+
 static TfFrameInfo *
 info_new (guint width, guint height)
 {

@@ -74,6 +74,14 @@ TfFrameInfo *tf_frame_info_read (const TfHeader *header, guint width, guint heig
 TfFrameInfo *tf_frame_info_copy (const TfFrameInfo *info);
 void tf_frame_info_free (TfFrameInfo *info);
 
+/**
+ * tf_frame_info_column_time: on a map every column has its own time: the passage of its longitude over the Earth's central
+ * meridian in the map's rotation; longitudes run on over the seam, so the two edges are a rotation apart.
+ * @x: FITS pixel
+ * Returns: unknown off the map and without a rotation number; the frame's own time on model maps and pictures of the disk.
+ */
+TfTime tf_frame_info_column_time (const TfFrameInfo *info, double x);
+
 const char *tf_kind_name (TfKind kind);        /* "disk" "cut-out" "map" "model map" "unknown" */
 TfKind tf_kind_from_name (const char *name);
 const char *tf_role_name (TfRole role);        /* "field" "intensity" "refused" */

@@ -195,6 +195,38 @@ test_same_bits (void)
     }
 }
 
+/* No BLANK, but one value all over the sky: left out there, and on the disk too when no field can be that strong. */
+static void
+test_fill_off_disk (void)
+{
+  g_autoptr (TfHeader) header = tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+                                                "CRPIX1  = 64.5\nCRPIX2  = 64.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 20\nCDELT2  = 20\n"
+                                                "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\n", -1);
+  static const float fills[] = { -32768, 0, -99 };
+  g_autofree float *pixels = g_new (float, 128 * 128);
+  for (guint f = 0; f < G_N_ELEMENTS (fills); f++)
+    {
+      g_autoptr (GRand) chance = g_rand_new_with_seed (3);
+      for (int k = 0; k < 128 * 128; k++)
+        pixels[k] = hypot (k % 128 - 63.5, k / 128 - 63.5) < 47.5 ? (float)(10 * normal (chance)) : fills[f];
+      pixels[64 * 128 + 60] = fills[f];
+      g_autofree char *path = scratch_file ("fill.fits");
+      TfFrameWrite how = { .bitpix = -32 };
+      g_assert_true (tf_frame_write (path, header, pixels, 128, 128, &how, NULL));
+      g_autoptr (TfFrame) frame = tf_frame_open (path, NULL, NULL, NULL);
+      g_assert_nonnull (frame);
+      const TfNote *note = tf_notes_find (tf_frame_get_info (frame)->repairs, "fill-off-disk");
+      g_assert_nonnull (note);
+      tf_check_near ("the fill", tf_note_get_number (note, 0), (double)fills[f], 0);
+      tf_check_nan ("the sky", tf_frame_value (frame, 3, 3));
+      if (f == 0)
+        tf_check_nan ("no field is so strong", tf_frame_value (frame, 61, 65));
+      else
+        tf_check_near ("a field may be that", tf_frame_value (frame, 61, 65), (double)fills[f], 0);
+      tf_check_near ("the disk", tf_frame_value (frame, 80, 80), (double)pixels[79 * 128 + 79], 0);
+    }
+}
+
 static void
 test_cancel (void)
 {
@@ -233,6 +265,7 @@ add_pixel_tests (void)
   g_test_add_func ("/frame/noise/none-and-nothing", test_no_noise);
   g_test_add_func ("/frame/pyramid/box-means-know-nan-and-edges", test_pyramid);
   g_test_add_func ("/frame/open/threads-and-pool-give-the-same-bits", test_same_bits);
+  g_test_add_func ("/frame/open/a-fill-off-the-disk-is-left-out", test_fill_off_disk);
   g_test_add_func ("/frame/open/is-cancelled", test_cancel);
   g_test_add_func ("/frame/open/a-corrected-geometry", test_correction);
 }

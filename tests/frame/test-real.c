@@ -211,6 +211,32 @@ test_map_corners (void)
     }
 }
 
+/* The network's own second set of axes gives the rotation of each column (CRVAL1A, CRPIX1A, CDELT1A); the daily map's edge
+ * that was seen last is at most three days ahead of its time. */
+static void
+test_column_times (void)
+{
+  g_autofree char *path = shared_data ("maps/mrbqs240330t0704c2282_071.fits");
+  g_autofree char *daily = shared_data ("maps/hmi.mrdailysynframe_small_720s.20181106_120000_TAI.data.fits");
+  if (path == NULL || daily == NULL)
+    {
+      g_test_skip ("real data not there");
+      return;
+    }
+  g_autoptr (TfFrameInfo) info = tf_frame_look (path, NULL, NULL, NULL);
+  for (double x = 1; x <= 360; x += 40)
+    {
+      double rotation = 2282.302778 - 0.00277777777778 * (x - 180.5);
+      tf_check_near ("rotation of a column", tf_carrington_rotation (tf_frame_info_column_time (info, x)), rotation, 1e-5);
+    }
+  g_assert_false (tf_time_is_known (tf_frame_info_column_time (info, 361)));
+  g_autoptr (TfFrameInfo) frame = tf_frame_look (daily, NULL, NULL, NULL);
+  TfTime first = tf_frame_info_column_time (frame, 1), last = tf_frame_info_column_time (frame, 720);
+  /* the first column was 60 deg east of the centre at T_OBS: its passage is 60 / 13.2 days later (common practice, no source) */
+  tf_check_near ("days ahead", (first.s - frame->time.s) / TF_DAY_S, 60 / 13.2, 0.1);
+  tf_check_near ("days between the edges", (first.s - last.s) / TF_DAY_S, 27.2753 * 719 / 720, 0.4);
+}
+
 /* Leading polarity by the flux in a box about the place in the daily region summaries (data index): +1 or -1. */
 static int
 western_polarity (const TfFrame *frame, double lat, double cmd, double half_arcsec)
@@ -354,6 +380,7 @@ add_real_tests (void)
       g_test_add_data_func (path, &truths[k], test_file);
     }
   g_test_add_func ("/frame/real/corners-of-the-maps", test_map_corners);
+  g_test_add_func ("/frame/real/columns-of-maps-have-their-times", test_column_times);
   g_test_add_func ("/frame/real/leading-polarities-of-nine-regions", test_polarities);
   g_test_add_func ("/frame/real/the-witness-on-a-pair", test_witness_pair);
   g_test_add_func ("/frame/real/the-limb-is-where-the-header-says", test_real_limb);
