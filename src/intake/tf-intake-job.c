@@ -37,7 +37,8 @@ fail (TfJob *job, const GError *error)
 {
   g_autofree char *line = g_strdelimit (g_strdup (error->message), "\n", ' ');
   g_autofree char *name = g_path_get_basename (job->path);
-  job->failure = strstr (line, name) != NULL ? g_steal_pointer (&line) : g_strdup_printf ("%s: %s", job->path, line);
+  job->failure = strstr (line, name) != NULL ? g_steal_pointer (&line)
+                                             : g_strdup_printf ("%s: %s", job->path, line);
 }
 
 static void
@@ -79,7 +80,8 @@ find (TfJob *job, const TfIntake *intake)
   job->noise_gauss = tf_frame_noise_at (frame, 0.5);
   if (intake->params->no_hints)
     return;
-  job->hints = tf_hints_find (frame, &intake->params->hint, &intake->params->measure, &work, &error);
+  job->hints
+      = tf_hints_find (frame, &intake->params->hint, &intake->params->measure, &work, &error);
   if (job->hints == NULL && g_error_matches (error, TF_REGION_ERROR, TF_REGION_ERROR_KIND))
     job->hints = g_ptr_array_new (); /* a map: outlines are drawn by hand */
   else if (job->hints == NULL)

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Which files: those named, whatever they are called, and in folders those that are called like frames. */
+/* Which files: those named, whatever they are called, and in folders those that are called like
+ * frames. */
 
 #include "tf-intake.h"
 
@@ -33,8 +34,9 @@ is_new_folder (List *list, const char *path)
   struct stat info;
   if (stat (path, &info) != 0)
     return FALSE;
-  return g_hash_table_add (list->folders, g_strdup_printf ("%" G_GUINT64_FORMAT ":%" G_GUINT64_FORMAT, (guint64)info.st_dev,
-                                                           (guint64)info.st_ino));
+  return g_hash_table_add (list->folders,
+                           g_strdup_printf ("%" G_GUINT64_FORMAT ":%" G_GUINT64_FORMAT,
+                                            (guint64)info.st_dev, (guint64)info.st_ino));
 }
 
 static gboolean

@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* One file on its way into a ledger. Workers read and measure, the caller's thread alone talks to the ledger. A job goes through
- * the workers twice: first for its checksum and header, then, unless the ledger knows it, for its pixels. */
+/* One file on its way into a ledger. Workers read and measure, the caller's thread alone talks to
+ * the ledger. A job goes through the workers twice: first for its checksum and header, then,
+ * unless the ledger knows it, for its pixels. */
 
 #include "tf-intake.h"
 
@@ -12,8 +13,8 @@ G_BEGIN_DECLS
 
 typedef enum
 {
-  JOB_LOOK,  /* checksum and header */
-  JOB_FIND,  /* pixels, noise, hints */
+  JOB_LOOK, /* checksum and header */
+  JOB_FIND, /* pixels, noise, hints */
 } TfJobStage;
 
 typedef struct

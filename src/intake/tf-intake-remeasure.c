@@ -2,14 +2,16 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Measures anew what the ledger holds, from the frames, and says what differs. Rows are taken evenly over time. */
+/* Measures anew what the ledger holds, from the frames, and says what differs. Rows are taken
+ * evenly over time. */
 
 #include "tf-intake.h"
 
 #include <math.h>
 #include <string.h>
 
-/* Relative difference that another compiler or machine may make in sums over a region; common practice, no source. */
+/* Relative difference that another compiler or machine may make in sums over a region; common
+ * practice, no source. */
 #define SAME 1e-6
 
 static gboolean
@@ -29,7 +31,8 @@ differing (const TfMeasure *a, const TfMeasure *b)
     return "imbalance";
   if (!same (a->lat_deg, b->lat_deg) || !same (a->carrington_lon_deg, b->carrington_lon_deg))
     return "lat_deg";
-  if (!same (a->axis_bearing_deg, b->axis_bearing_deg) || !same (a->axis_tilt_deg, b->axis_tilt_deg))
+  if (!same (a->axis_bearing_deg, b->axis_bearing_deg)
+      || !same (a->axis_tilt_deg, b->axis_tilt_deg))
     return "axis_tilt_deg";
   if (!same (a->separation_deg, b->separation_deg))
     return "separation_deg";
@@ -74,24 +77,28 @@ remeasure (TfLedger *ledger, const TfRow *row, Open *open, TfNotes *findings)
   if (frame == NULL)
     return;
   g_auto (TfMeasure) measure = { 0 };
-  const char *what = tf_measure_region (&measure, frame, row->outline, &params, NULL) ? differing (&measure, &row->measure)
-                                                                                       : "pixels";
+  const char *what = tf_measure_region (&measure, frame, row->outline, &params, NULL)
+                         ? differing (&measure, &row->measure)
+                         : "pixels";
   const char *name = row->is_hint ? row->mark_id : row->region;
   if (what != NULL)
-    tf_notes_add (findings, "measure-differs", "ssss", tf_ledger_get_path (ledger), name, row->frame_path, what);
+    tf_notes_add (findings, "measure-differs", "ssss", tf_ledger_get_path (ledger), name,
+                  row->frame_path, what);
 }
 
 gboolean
 tf_intake_remeasure (TfLedger *ledger, guint limit, TfNotes *findings, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && findings != NULL, FALSE);
-  g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE }, error);
+  g_autoptr (GPtrArray) rows
+      = tf_ledger_rows (ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE }, error);
   if (rows == NULL)
     return FALSE;
   Open open = { 0 };
   guint n = MIN (limit, rows->len);
   for (guint k = 0; k < n; k++)
-    remeasure (ledger, g_ptr_array_index (rows, (guint)((guint64)k * rows->len / n)), &open, findings);
+    remeasure (ledger, g_ptr_array_index (rows, (guint)((guint64)k * rows->len / n)), &open,
+               findings);
   g_clear_pointer (&open.frame, tf_frame_unref);
   return TRUE;
 }

@@ -2,9 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* fill: files through the workers into the ledger. At most two jobs a worker are under way, so memory does not grow with the number
- * of files. Hints are measured with an even floor, each frame's own: what studies and tables want; a study says how many rows have
- * another floor than its own. */
+/* fill: files through the workers into the ledger. At most two jobs a worker are under way, so
+ * memory does not grow with the number of files. Hints are measured with an even floor, each
+ * frame's own: what studies and tables want; a study says how many rows have another floor than
+ * its own. */
 
 #include "tf-intake-private.h"
 
@@ -33,7 +34,8 @@ tf_intake_params_init (TfIntakeParams *params)
 }
 
 static void
-report (Fill *fill, const char *path, TfIntakeOutcome outcome, gint64 frame, guint n_hints, const char *message)
+report (Fill *fill, const char *path, TfIntakeOutcome outcome, gint64 frame, guint n_hints,
+        const char *message)
 {
   fill->done++;
   TfIntakeReport r = { path, outcome, frame, n_hints, message, fill->done, fill->total };
@@ -55,7 +57,8 @@ static void
 send (Fill *fill, TfJob *job, TfJobStage stage)
 {
   job->stage = stage;
-  g_thread_pool_push (fill->workers, job, NULL); /* an unshared pool has all its threads: it does not fail */
+  g_thread_pool_push (fill->workers, job,
+                      NULL); /* an unshared pool has all its threads: it does not fail */
   fill->under_way++;
 }
 
@@ -67,7 +70,8 @@ report_refused (Fill *fill, const TfJob *job, gint64 frame)
   report (fill, job->path, TF_INTAKE_REFUSED, frame, 0, message);
 }
 
-/* The header was read. A frame that the ledger knows, at whatever path, or that is refused ends here. */
+/* The header was read. A frame that the ledger knows, at whatever path, or that is refused ends
+ * here. */
 static gboolean
 take_looked (Fill *fill, TfJob *job, gboolean *again, GError **error)
 {
@@ -76,8 +80,8 @@ take_looked (Fill *fill, TfJob *job, gboolean *again, GError **error)
   *again = !(refused || (known != 0 && is_complete (fill, known)));
   if (*again)
     return TRUE;
-  gint64 frame = tf_ledger_add_frame (fill->ledger, job->path, job->checksum, job->hdu, job->plane, job->info, job->noise_gauss,
-                                      error);
+  gint64 frame = tf_ledger_add_frame (fill->ledger, job->path, job->checksum, job->hdu, job->plane,
+                                      job->info, job->noise_gauss, error);
   if (frame == 0)
     return FALSE;
   if (refused && known == 0)
@@ -90,11 +94,12 @@ take_looked (Fill *fill, TfJob *job, gboolean *again, GError **error)
 static gboolean
 take_found (Fill *fill, TfJob *job, GError **error)
 {
-  gint64 frame = tf_ledger_add_frame (fill->ledger, job->path, job->checksum, job->hdu, job->plane, job->info, job->noise_gauss,
-                                      error);
+  gint64 frame = tf_ledger_add_frame (fill->ledger, job->path, job->checksum, job->hdu, job->plane,
+                                      job->info, job->noise_gauss, error);
   if (frame == 0
       || (job->hints != NULL
-          && !tf_ledger_add_hints (fill->ledger, frame, fill->shared.rule, job->hints, fill->shared.method, error)))
+          && !tf_ledger_add_hints (fill->ledger, frame, fill->shared.rule, job->hints,
+                                   fill->shared.method, error)))
     return FALSE;
   report (fill, job->path, TF_INTAKE_ADDED, frame, job->hints != NULL ? job->hints->len : 0, NULL);
   return TRUE;
@@ -125,7 +130,8 @@ static gboolean
 start_one (Fill *fill, const char *path)
 {
   gint64 known = tf_ledger_find_file (fill->ledger, path);
-  if (known != 0 && fill->shared.params->spec.hdu == 0 && fill->shared.params->spec.plane <= 1 && is_complete (fill, known))
+  if (known != 0 && fill->shared.params->spec.hdu == 0 && fill->shared.params->spec.plane <= 1
+      && is_complete (fill, known))
     {
       report (fill, path, TF_INTAKE_THERE, known, 0, NULL);
       return FALSE;
@@ -140,7 +146,8 @@ is_ours (const TfIntakeParams *params, guint k)
   return params->parts == 0 || k % params->parts == params->part - 1;
 }
 
-/* What is under way is dropped when the ledger cannot be written, and finished when the caller asked to stop. */
+/* What is under way is dropped when the ledger cannot be written, and finished when the caller
+ * asked to stop. */
 static void
 drain (Fill *fill)
 {
@@ -168,7 +175,8 @@ run (Fill *fill, char *const *files, TfCancel *cancel, GError **error)
   if (!tf_cancel_is_raised (cancel) || fill->done == fill->total)
     return TRUE;
   g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED,
-               _ ("stopped after %u of %u files; the same call goes on from there"), fill->done, fill->total);
+               _ ("stopped after %u of %u files; the same call goes on from there"), fill->done,
+               fill->total);
   return FALSE;
 }
 
@@ -182,11 +190,12 @@ count_ours (char *const *files, const TfIntakeParams *params)
 }
 
 gboolean
-tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *params, TfCancel *cancel, TfIntakeFunc func,
-                gpointer data, GError **error)
+tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *params,
+                TfCancel *cancel, TfIntakeFunc func, gpointer data, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && files != NULL && params != NULL, FALSE);
-  g_return_val_if_fail (params->parts == 0 || (params->part >= 1 && params->part <= params->parts), FALSE);
+  g_return_val_if_fail (params->parts == 0 || (params->part >= 1 && params->part <= params->parts),
+                        FALSE);
   const TfNote *why = tf_ledger_get_read_only (ledger);
   if (why != NULL)
     {
@@ -195,10 +204,14 @@ tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *para
       return FALSE;
     }
   guint n = params->workers > 0 ? params->workers : g_get_num_processors ();
-  Fill fill = { .ledger = ledger, .most = 2 * n, .total = count_ours (files, params), .func = func, .data = data };
-  fill.shared = (TfIntake){ .params = params, .pool = tf_pool_new (), .done = g_async_queue_new () };
+  Fill fill = {
+    .ledger = ledger, .most = 2 * n, .total = count_ours (files, params), .func = func, .data = data
+  };
+  fill.shared
+      = (TfIntake){ .params = params, .pool = tf_pool_new (), .done = g_async_queue_new () };
   fill.shared.rule = tf_options_dup_canonical (tf_hint_options, &params->hint, TF_HINT_RULE);
-  fill.shared.method = tf_options_dup_canonical (tf_measure_options, &params->measure, TF_MEASURE_METHOD);
+  fill.shared.method
+      = tf_options_dup_canonical (tf_measure_options, &params->measure, TF_MEASURE_METHOD);
   fill.workers = g_thread_pool_new (tf_job_work, &fill.shared, (int)n, FALSE, error);
   gboolean ok = fill.workers != NULL && run (&fill, files, cancel, error);
   drain (&fill);

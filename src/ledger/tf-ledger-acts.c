@@ -2,8 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The log of deeds. An act is never changed and never removed; (replica, seq) has no gaps; its hash covers all of it and the
- * hash before it in its replica. */
+/* The log of deeds. An act is never changed and never removed; (replica, seq) has no gaps; its
+ * hash covers all of it and the hash before it in its replica. */
 
 #include "tf-ledger-private.h"
 
@@ -29,8 +29,9 @@ tf_subject (char tag, ...)
 }
 
 char *
-tf_act_hash (const char *before, const char *replica, gint64 seq, gint64 clock, gint64 wall, const char *kind,
-             const char *subject, const void *body, gsize n_body, const char *after)
+tf_act_hash (const char *before, const char *replica, gint64 seq, gint64 clock, gint64 wall,
+             const char *kind, const char *subject, const void *body, gsize n_body,
+             const char *after)
 {
   TfDigest digest;
   tf_digest_begin (&digest, "tiltfield act 1");
@@ -49,11 +50,11 @@ tf_act_hash (const char *before, const char *replica, gint64 seq, gint64 clock, 
 char *
 tf_act_dup_after (TfLedger *ledger, gint64 replica, gint64 seq, GError **error)
 {
-  g_autoptr (sqlite3_stmt) query
-      = tf_query (ledger, error,
-                  "SELECT lower (hex (r.id)), x.p_seq FROM after x JOIN replica r ON r.no = x.p_replica"
-                  " WHERE x.replica = ?1 AND x.seq = ?2 ORDER BY r.id, x.p_seq",
-                  "ii", replica, seq);
+  g_autoptr (sqlite3_stmt) query = tf_query (
+      ledger, error,
+      "SELECT lower (hex (r.id)), x.p_seq FROM after x JOIN replica r ON r.no = x.p_replica"
+      " WHERE x.replica = ?1 AND x.seq = ?2 ORDER BY r.id, x.p_seq",
+      "ii", replica, seq);
   if (query == NULL)
     return NULL;
   g_autoptr (GString) text = g_string_new (NULL);
@@ -65,40 +66,46 @@ tf_act_dup_after (TfLedger *ledger, gint64 replica, gint64 seq, GError **error)
 }
 
 /* The heads of the subject: what this ledger holds of it that nothing replaces yet. */
-#define HEADS_SQL                                                                                                              \
-  "INSERT INTO after (replica, seq, p_replica, p_seq) SELECT ?1, ?2, a.replica, a.seq FROM act a WHERE a.subject = ?3"         \
-  " AND NOT (a.replica = ?1 AND a.seq = ?2) AND NOT EXISTS"                                                                    \
+#define HEADS_SQL                                                                                  \
+  "INSERT INTO after (replica, seq, p_replica, p_seq) SELECT ?1, ?2, a.replica, a.seq FROM act a " \
+  "WHERE a.subject = ?3"                                                                           \
+  " AND NOT (a.replica = ?1 AND a.seq = ?2) AND NOT EXISTS"                                        \
   " (SELECT 1 FROM after x WHERE x.p_replica = a.replica AND x.p_seq = a.seq)"
 
-#define ACT_SQL                                                                                                                \
-  "INSERT INTO act (replica, seq, clock, wall, kind, subject, body, before, hash) VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8,"     \
+#define ACT_SQL                                                                                    \
+  "INSERT INTO act (replica, seq, clock, wall, kind, subject, body, before, hash) VALUES (?1, "    \
+  "?2, ?3, ?4, ?5, ?6, ?7, ?8,"                                                                    \
   " zeroblob (32))"
 
 static gboolean
 write_act (TfLedger *ledger, TfAct *act, gint64 wall, const char *body, GError **error)
 {
-  g_autofree char *before = tf_text_value (ledger, NULL, "SELECT lower (hex (hash)) FROM act WHERE replica = ?1 AND seq = ?2",
-                                           "ii", act->replica, act->seq - 1);
+  g_autofree char *before = tf_text_value (
+      ledger, NULL, "SELECT lower (hex (hash)) FROM act WHERE replica = ?1 AND seq = ?2", "ii",
+      act->replica, act->seq - 1);
   if (before == NULL)
     before = g_strdup (NO_HASH);
   gsize n = strlen (body);
-  if (!tf_run (ledger, error, ACT_SQL, "iiiithbh", act->replica, act->seq, act->clock, wall, act->kind, act->subject, body, n,
-               before)
+  if (!tf_run (ledger, error, ACT_SQL, "iiiithbh", act->replica, act->seq, act->clock, wall,
+               act->kind, act->subject, body, n, before)
       || !tf_run (ledger, error, HEADS_SQL, "iih", act->replica, act->seq, act->subject))
     return FALSE;
   g_autofree char *after = tf_act_dup_after (ledger, act->replica, act->seq, error);
   if (after == NULL)
     return FALSE;
-  g_autofree char *hash = tf_act_hash (before, ledger->replica_id, act->seq, act->clock, wall, act->kind, act->subject, body, n,
-                                       after);
-  return tf_run (ledger, error, "UPDATE act SET hash = ?3 WHERE replica = ?1 AND seq = ?2", "iih", act->replica, act->seq, hash)
+  g_autofree char *hash = tf_act_hash (before, ledger->replica_id, act->seq, act->clock, wall,
+                                       act->kind, act->subject, body, n, after);
+  return tf_run (ledger, error, "UPDATE act SET hash = ?3 WHERE replica = ?1 AND seq = ?2", "iih",
+                 act->replica, act->seq, hash)
          && tf_run (ledger, error,
-                    "INSERT INTO have (replica, upto) VALUES (?1, ?2) ON CONFLICT (replica) DO UPDATE SET upto = ?2", "ii",
-                    act->replica, act->seq);
+                    "INSERT INTO have (replica, upto) VALUES (?1, ?2) ON CONFLICT (replica) DO "
+                    "UPDATE SET upto = ?2",
+                    "ii", act->replica, act->seq);
 }
 
 gboolean
-tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuilder *body, GError **error)
+tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuilder *body,
+               GError **error)
 {
   /* Another handle on this file may have begun one for us since we opened it. */
   if (ledger->replica == 0 && !tf_replica_choose (ledger, error))
@@ -109,11 +116,14 @@ tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuil
   g_autofree char *text = tf_json_node_dup_text (root, FALSE);
   TfAct act = {
     .replica = ledger->replica,
-    .seq = tf_value (ledger, NULL, 0, "SELECT upto FROM have WHERE replica = ?1", "i", ledger->replica) + 1,
+    .seq
+    = tf_value (ledger, NULL, 0, "SELECT upto FROM have WHERE replica = ?1", "i", ledger->replica)
+      + 1,
     .clock = tf_value (ledger, NULL, 0, "SELECT max (clock) FROM act", "") + 1,
     .kind = kind,
     .subject = subject,
     .body = json_node_get_object (root),
   };
-  return write_act (ledger, &act, ledger->now (ledger->now_data), text, error) && tf_project_act (ledger, &act, error);
+  return write_act (ledger, &act, ledger->now (ledger->now_data), text, error)
+         && tf_project_act (ledger, &act, error);
 }

@@ -2,15 +2,16 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* What check looks at: the file, its schema, the log, the machine rows' digests, and the projections made anew from the log alone
- * (tf-ledger-rebuild.c). It changes nothing. */
+/* What check looks at: the file, its schema, the log, the machine rows' digests, and the
+ * projections made anew from the log alone (tf-ledger-rebuild.c). It changes nothing. */
 
 #include "tf-ledger-private.h"
 #include "tf-ledger-check-private.h"
 
 #include <string.h>
 
-/* -- digests of machine rows ------------------------------------------------------------------------- */
+/* -- digests of machine rows
+ * ------------------------------------------------------------------------- */
 const char *const tf_digest_tables[] = { "frame", "measure", "hint", NULL };
 
 /* All that never changes in a row. */
@@ -18,7 +19,8 @@ static char *
 digest_columns (const char *table)
 {
   if (strcmp (table, "frame") == 0)
-    return g_strdup ("cid, checksum, hdu, plane, kind, role, time, time_text, time_source, instrument, vantage, simulated,"
+    return g_strdup ("cid, checksum, hdu, plane, kind, role, time, time_text, time_source, "
+                     "instrument, vantage, simulated,"
                      " noise_gauss, refusal, info");
   if (strcmp (table, "hint") == 0)
     return g_strdup ("cid, frame, rule, ordinal, unipolar, outline, measure, notes");
@@ -37,7 +39,8 @@ gboolean
 tf_digest_store (TfLedger *ledger, const char *table, gint64 id, GError **error)
 {
   g_autofree char *names = digest_columns (table);
-  g_autofree char *read = g_strdup_printf ("SELECT id, NULL, %s FROM %s WHERE id = ?1", names, table);
+  g_autofree char *read
+      = g_strdup_printf ("SELECT id, NULL, %s FROM %s WHERE id = ?1", names, table);
   g_autofree char *write = g_strdup_printf ("UPDATE %s SET digest = ?2 WHERE id = ?1", table);
   g_autofree char *digest = NULL;
   {
@@ -61,12 +64,14 @@ check_machine_rows (TfLedger *ledger, const char *table, TfNotes *findings, GErr
       g_autofree char *kept = tf_column_dup_hex (query, 1);
       g_autofree char *made = row_digest (query, table);
       if (strcmp (kept, made) != 0)
-        tf_notes_add (findings, "check-machine-row", "ssi", ledger->path, table, sqlite3_column_int (query, 0));
+        tf_notes_add (findings, "check-machine-row", "ssi", ledger->path, table,
+                      sqlite3_column_int (query, 0));
     }
   return more == 0;
 }
 
-/* -- the file ---------------------------------------------------------------------------------------- */
+/* -- the file
+ * ---------------------------------------------------------------------------------------- */
 static gboolean
 check_file (TfLedger *ledger, TfNotes *findings, GError **error)
 {
@@ -84,11 +89,13 @@ check_references (TfLedger *ledger, TfNotes *findings, GError **error)
   g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, "PRAGMA foreign_key_check", "");
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
-    tf_notes_add (findings, "check-reference", "sss", ledger->path, tf_column_text (query, 0), tf_column_text (query, 2));
+    tf_notes_add (findings, "check-reference", "sss", ledger->path, tf_column_text (query, 0),
+                  tf_column_text (query, 2));
   return more == 0;
 }
 
-/* -- the log ----------------------------------------------------------------------------------------- */
+/* -- the log
+ * ----------------------------------------------------------------------------------------- */
 typedef struct
 {
   gint64 replica, seq; /* of the act before */
@@ -113,8 +120,9 @@ check_act (TfLedger *ledger, sqlite3_stmt *query, Chain *chain, TfNotes *finding
   if (after == NULL)
     return FALSE;
   const void *body = sqlite3_column_blob (query, 7);
-  g_autofree char *made = tf_act_hash (before, id, seq, sqlite3_column_int64 (query, 3), sqlite3_column_int64 (query, 4),
-                                       tf_column_text (query, 5), subject, body, (gsize)sqlite3_column_bytes (query, 7), after);
+  g_autofree char *made = tf_act_hash (
+      before, id, seq, sqlite3_column_int64 (query, 3), sqlite3_column_int64 (query, 4),
+      tf_column_text (query, 5), subject, body, (gsize)sqlite3_column_bytes (query, 7), after);
   if (strcmp (made, hash) != 0)
     tf_notes_add (findings, "check-act-hash", "ssi", ledger->path, id, (int)seq);
   chain->replica = replica;
@@ -128,10 +136,11 @@ static gboolean
 check_acts (TfLedger *ledger, TfNotes *findings, GError **error)
 {
   Chain chain = { 0 };
-  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error,
-                                             "SELECT a.replica, r.id, a.seq, a.clock, a.wall, a.kind, a.subject, a.body, a.before,"
-                                             " a.hash FROM act a LEFT JOIN replica r ON r.no = a.replica ORDER BY a.replica, a.seq",
-                                             "");
+  g_autoptr (sqlite3_stmt) query = tf_query (
+      ledger, error,
+      "SELECT a.replica, r.id, a.seq, a.clock, a.wall, a.kind, a.subject, a.body, a.before,"
+      " a.hash FROM act a LEFT JOIN replica r ON r.no = a.replica ORDER BY a.replica, a.seq",
+      "");
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     if (!check_act (ledger, query, &chain, findings, error))
@@ -147,17 +156,18 @@ check_acts (TfLedger *ledger, TfNotes *findings, GError **error)
 static gboolean
 check_have (TfLedger *ledger, TfNotes *findings, GError **error)
 {
-  g_autoptr (sqlite3_stmt) query
-      = tf_query (ledger, error,
-                  "SELECT r.id, coalesce (h.upto, 0), coalesce ((SELECT max (a.seq) FROM act a WHERE a.replica = r.no), 0)"
-                  " FROM replica r LEFT JOIN have h ON h.replica = r.no",
-                  "");
+  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error,
+                                             "SELECT r.id, coalesce (h.upto, 0), coalesce ((SELECT "
+                                             "max (a.seq) FROM act a WHERE a.replica = r.no), 0)"
+                                             " FROM replica r LEFT JOIN have h ON h.replica = r.no",
+                                             "");
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     {
       g_autofree char *id = tf_column_dup_hex (query, 0);
       if (sqlite3_column_int64 (query, 1) != sqlite3_column_int64 (query, 2))
-        tf_notes_add (findings, "check-act-gap", "ssi", ledger->path, id, sqlite3_column_int (query, 1));
+        tf_notes_add (findings, "check-act-gap", "ssi", ledger->path, id,
+                      sqlite3_column_int (query, 1));
     }
   return more == 0;
 }
@@ -180,5 +190,6 @@ tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error)
     return FALSE;
   gboolean ok = check_inside (ledger, findings, error);
   tf_ledger_rollback (ledger);
-  return ok && tf_check_schema (ledger, findings, error) && tf_check_projections (ledger, findings, error);
+  return ok && tf_check_schema (ledger, findings, error)
+         && tf_check_projections (ledger, findings, error);
 }

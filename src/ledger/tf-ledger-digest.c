@@ -2,14 +2,18 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Ids and hashes. Every part of a hash has its length (8 bytes, little endian) before it, so that no two lists of
- * parts run together into the same bytes. BLAKE2b-256 (RFC 7693) by libsodium. */
+/* Ids and hashes. Every part of a hash has its length (8 bytes, little endian) before it, so that
+ * no two lists of parts run together into the same bytes. BLAKE2b-256 (RFC 7693) by libsodium. */
 
 #include "tf-ledger-private.h"
 
 #include <string.h>
 
-enum { HASH_BYTES = 32, UUID_BYTES = 16 };
+enum
+{
+  HASH_BYTES = 32,
+  UUID_BYTES = 16
+};
 
 static char *
 to_hex (const guint8 *bytes, gsize n)
@@ -84,7 +88,8 @@ tf_digest_row (sqlite3_stmt *query, const char *tag, int first, int last)
   return tf_digest_end (&digest);
 }
 
-/* RFC 9562, section 5.7: 48 bits of milliseconds, the rest drawn by lot. The time helps an index; nothing is decided by it. */
+/* RFC 9562, section 5.7: 48 bits of milliseconds, the rest drawn by lot. The time helps an index;
+ * nothing is decided by it. */
 char *
 tf_uuid7 (gint64 now_ms)
 {

@@ -2,23 +2,27 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Strokes between keeps: one row a frame and person, durable, local. Not an act: a morning would make thousands. */
+/* Strokes between keeps: one row a frame and person, durable, local. Not an act: a morning would
+ * make thousands. */
 
 #include "tf-ledger-private.h"
 
 gboolean
-tf_ledger_set_draft (TfLedger *ledger, gint64 frame, gint64 person, const char *text, GError **error)
+tf_ledger_set_draft (TfLedger *ledger, gint64 frame, gint64 person, const char *text,
+                     GError **error)
 {
   g_return_val_if_fail (ledger != NULL, FALSE);
   if (!tf_ledger_begin (ledger, error))
     return FALSE;
   gint64 now = ledger->now (ledger->now_data);
-  gboolean ok = text != NULL
-                    ? tf_run (ledger, error,
-                              "INSERT INTO draft (frame, person, text, saved) VALUES (?1, ?2, ?3, ?4)"
-                              " ON CONFLICT (frame, person) DO UPDATE SET text = ?3, saved = ?4",
-                              "iiti", frame, person, text, now)
-                    : tf_run (ledger, error, "DELETE FROM draft WHERE frame = ?1 AND person = ?2", "ii", frame, person);
+  gboolean ok
+      = text != NULL
+            ? tf_run (ledger, error,
+                      "INSERT INTO draft (frame, person, text, saved) VALUES (?1, ?2, ?3, ?4)"
+                      " ON CONFLICT (frame, person) DO UPDATE SET text = ?3, saved = ?4",
+                      "iiti", frame, person, text, now)
+            : tf_run (ledger, error, "DELETE FROM draft WHERE frame = ?1 AND person = ?2", "ii",
+                      frame, person);
   if (!ok)
     {
       tf_ledger_rollback (ledger);
@@ -31,5 +35,6 @@ char *
 tf_ledger_dup_draft (TfLedger *ledger, gint64 frame, gint64 person)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
-  return tf_text_value (ledger, NULL, "SELECT text FROM draft WHERE frame = ?1 AND person = ?2", "ii", frame, person);
+  return tf_text_value (ledger, NULL, "SELECT text FROM draft WHERE frame = ?1 AND person = ?2",
+                        "ii", frame, person);
 }

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Frames: put in once by content (checksum, HDU, plane), wherever and however often the file is seen. */
+/* Frames: put in once by content (checksum, HDU, plane), wherever and however often the file is
+ * seen. */
 
 #include "tf-ledger-private.h"
 
@@ -30,14 +31,16 @@ stat_file (const char *path, gint64 *size, gint64 *mtime)
   return TRUE;
 }
 
-#define FRAME_SQL                                                                                                              \
-  "INSERT OR IGNORE INTO frame (cid, checksum, hdu, plane, kind, role, time, time_text, time_source, instrument, vantage,"     \
-  " simulated, noise_gauss, refusal, info, path) VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8, ?9, ?10, ?11, ?12, ?13, ?14, ?15,"    \
+#define FRAME_SQL                                                                                  \
+  "INSERT OR IGNORE INTO frame (cid, checksum, hdu, plane, kind, role, time, time_text, "          \
+  "time_source, instrument, vantage,"                                                              \
+  " simulated, noise_gauss, refusal, info, path) VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8, ?9, "     \
+  "?10, ?11, ?12, ?13, ?14, ?15,"                                                                  \
   " ?16)"
 
 static gboolean
-insert_frame (TfLedger *ledger, const char *cid, const char *path, const char *checksum, int hdu, int plane,
-              const TfFrameInfo *info, double noise_gauss, GError **error)
+insert_frame (TfLedger *ledger, const char *cid, const char *path, const char *checksum, int hdu,
+              int plane, const TfFrameInfo *info, double noise_gauss, GError **error)
 {
   g_autofree char *text = tf_info_dup_text (info);
   g_autofree char *time = tf_time_dup_iso (info->time, 0);
@@ -45,20 +48,24 @@ insert_frame (TfLedger *ledger, const char *cid, const char *path, const char *c
   g_autofree char *refusal = info->refusal != NULL ? tf_note_dup_text (info->refusal, TRUE) : NULL;
   const char *source = info->time_source != NULL ? info->time_source : "unknown";
   const char *instrument = info->instrument != NULL ? info->instrument : "unknown";
-  return tf_run (ledger, error, FRAME_SQL, "htiittdttttidttt", cid, checksum, (gint64)hdu, (gint64)plane,
-                 tf_kind_name (info->kind), tf_role_name (info->role), info->time.s, time, source, instrument, vantage,
-                 (gint64)info->simulated, noise_gauss, refusal, text, path);
+  return tf_run (ledger, error, FRAME_SQL, "htiittdttttidttt", cid, checksum, (gint64)hdu,
+                 (gint64)plane, tf_kind_name (info->kind), tf_role_name (info->role), info->time.s,
+                 time, source, instrument, vantage, (gint64)info->simulated, noise_gauss, refusal,
+                 text, path);
 }
 
 /* What else was seen at that path is no longer there. */
 gboolean
-tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime, GError **error)
+tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime,
+              GError **error)
 {
-  return tf_run (ledger, error, "UPDATE frame SET path = ?2 WHERE id = ?1 AND path <> ?2", "it", frame, path)
-         && tf_run (ledger, error,
-                    "DELETE FROM place WHERE path = ?1 AND frame IN"
-                    " (SELECT id FROM frame WHERE checksum <> (SELECT checksum FROM frame WHERE id = ?2))",
-                    "ti", path, frame)
+  return tf_run (ledger, error, "UPDATE frame SET path = ?2 WHERE id = ?1 AND path <> ?2", "it",
+                 frame, path)
+         && tf_run (
+             ledger, error,
+             "DELETE FROM place WHERE path = ?1 AND frame IN"
+             " (SELECT id FROM frame WHERE checksum <> (SELECT checksum FROM frame WHERE id = ?2))",
+             "ti", path, frame)
          && tf_run (ledger, error,
                     "INSERT INTO place (path, frame, size, mtime) VALUES (?1, ?2, ?3, ?4)"
                     " ON CONFLICT (path, frame) DO UPDATE SET size = ?3, mtime = ?4",
@@ -66,8 +73,8 @@ tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gin
 }
 
 gint64
-tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane, const TfFrameInfo *info,
-              double noise_gauss, GError **error)
+tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane,
+              const TfFrameInfo *info, double noise_gauss, GError **error)
 {
   g_autofree char *cid = frame_cid (checksum, hdu, plane);
   gint64 id = tf_value (ledger, NULL, 0, "SELECT id FROM frame WHERE cid = ?1", "h", cid);
@@ -83,15 +90,17 @@ tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu,
 }
 
 gint64
-tf_ledger_add_frame (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane, const TfFrameInfo *info,
-                     double noise_gauss, GError **error)
+tf_ledger_add_frame (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane,
+                     const TfFrameInfo *info, double noise_gauss, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && path != NULL && checksum != NULL && info != NULL, 0);
   g_autofree char *full = g_canonicalize_filename (path, NULL);
   if (!tf_ledger_begin (ledger, error))
     return 0;
-  gint64 size, mtime, id = tf_frame_put (ledger, full, checksum, hdu, plane, info, noise_gauss, error);
-  if (id == 0 || (stat_file (full, &size, &mtime) && !tf_place_put (ledger, id, full, size, mtime, error)))
+  gint64 size, mtime,
+      id = tf_frame_put (ledger, full, checksum, hdu, plane, info, noise_gauss, error);
+  if (id == 0
+      || (stat_file (full, &size, &mtime) && !tf_place_put (ledger, id, full, size, mtime, error)))
     {
       tf_ledger_rollback (ledger);
       return 0;
@@ -115,16 +124,19 @@ tf_ledger_find_file (TfLedger *ledger, const char *path)
   gint64 size, mtime;
   if (!stat_file (full, &size, &mtime))
     return 0;
-  return tf_value (ledger, NULL, 0,
-                   "SELECT frame FROM place WHERE path = ?1 AND size = ?2 AND mtime = ?3 ORDER BY frame LIMIT 1", "tii", full,
-                   size, mtime);
+  return tf_value (
+      ledger, NULL, 0,
+      "SELECT frame FROM place WHERE path = ?1 AND size = ?2 AND mtime = ?3 ORDER BY frame LIMIT 1",
+      "tii", full, size, mtime);
 }
 
-#define ROW_SQL                                                                                                                \
-  "SELECT f.id, lower (hex (f.cid)), f.path, f.checksum, f.hdu, f.plane, f.info, f.noise_gauss, f.refusal,"                    \
-  " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 1),"                                                      \
-  " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 0),"                                                      \
-  " EXISTS (SELECT 1 FROM dropped d JOIN hint h ON h.id = d.hint WHERE h.frame = f.id) FROM frame f "
+#define ROW_SQL                                                                                    \
+  "SELECT f.id, lower (hex (f.cid)), f.path, f.checksum, f.hdu, f.plane, f.info, f.noise_gauss, "  \
+  "f.refusal,"                                                                                     \
+  " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 1),"                          \
+  " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 0),"                          \
+  " EXISTS (SELECT 1 FROM dropped d JOIN hint h ON h.id = d.hint WHERE h.frame = f.id) FROM "      \
+  "frame f "
 
 static TfFrameRow *
 read_row (sqlite3_stmt *query, GError **error)
@@ -166,7 +178,8 @@ tf_ledger_frames (TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_frame_row_free);
-  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, ROW_SQL "ORDER BY f.time IS NULL, f.time, f.id", "");
+  g_autoptr (sqlite3_stmt) query
+      = tf_query (ledger, error, ROW_SQL "ORDER BY f.time IS NULL, f.time, f.id", "");
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     {
@@ -185,7 +198,7 @@ tf_ledger_frame (TfLedger *ledger, gint64 id, GError **error)
   g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, ROW_SQL "WHERE f.id = ?1", "i", id);
   int more = query != NULL ? tf_query_step (ledger, query, error) : -1;
   if (more == 0)
-    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("the ledger %s has no frame %" G_GINT64_FORMAT),
-                 ledger->path, id);
+    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE,
+                 _ ("the ledger %s has no frame %" G_GINT64_FORMAT), ledger->path, id);
   return more > 0 ? read_row (query, error) : NULL;
 }

@@ -2,8 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Part ledgers into one, a frame a transaction. Content ids do the work: what is there already is not put in twice, and gathering can
- * be stopped and started again. */
+/* Part ledgers into one, a frame a transaction. Content ids do the work: what is there already is
+ * not put in twice, and gathering can be stopped and started again. */
 
 #include "tf-ledger-private.h"
 
@@ -37,10 +37,11 @@ static GPtrArray *
 read_hints (TfLedger *part, gint64 frame, gint64 rule, GError **error)
 {
   g_autofree char *measured = tf_measure_dup_columns ("e.");
-  g_autofree char *sql = g_strconcat ("SELECT h.unipolar, h.outline, h.notes, ", measured,
-                                      " FROM hint h JOIN measure e ON e.id = h.measure WHERE h.frame = ?1 AND h.rule = ?2"
-                                      " ORDER BY h.ordinal",
-                                      NULL);
+  g_autofree char *sql = g_strconcat (
+      "SELECT h.unipolar, h.outline, h.notes, ", measured,
+      " FROM hint h JOIN measure e ON e.id = h.measure WHERE h.frame = ?1 AND h.rule = ?2"
+      " ORDER BY h.ordinal",
+      NULL);
   g_autoptr (GPtrArray) hints = g_ptr_array_new_with_free_func (hint_free);
   g_autoptr (sqlite3_stmt) query = tf_query (part, error, sql, "ii", frame, rule);
   int more = -1;
@@ -55,13 +56,16 @@ read_hints (TfLedger *part, gint64 frame, gint64 rule, GError **error)
 }
 
 static gboolean
-gather_runs (TfLedger *ledger, TfLedger *part, gint64 from, gint64 to, guint *n_hints, GError **error)
+gather_runs (TfLedger *ledger, TfLedger *part, gint64 from, gint64 to, guint *n_hints,
+             GError **error)
 {
-  g_autoptr (sqlite3_stmt) query = tf_query (part, error,
-                                             "SELECT u.rule, r.text, t.text, (SELECT max (e.program) FROM hint h JOIN measure e ON e.id = h.measure"
-                                             " WHERE h.frame = u.frame AND h.rule = u.rule) FROM run u JOIN method r ON r.id = u.rule"
-                                             " JOIN method t ON t.id = u.method WHERE u.frame = ?1 ORDER BY u.id",
-                                             "i", from);
+  g_autoptr (sqlite3_stmt) query = tf_query (
+      part, error,
+      "SELECT u.rule, r.text, t.text, (SELECT max (e.program) FROM hint h JOIN measure e ON e.id = "
+      "h.measure"
+      " WHERE h.frame = u.frame AND h.rule = u.rule) FROM run u JOIN method r ON r.id = u.rule"
+      " JOIN method t ON t.id = u.method WHERE u.frame = ?1 ORDER BY u.id",
+      "i", from);
   int more = -1;
   while (query != NULL && (more = tf_query_step (part, query, error)) > 0)
     {
@@ -69,7 +73,9 @@ gather_runs (TfLedger *ledger, TfLedger *part, gint64 from, gint64 to, guint *n_
       if (tf_ledger_has_hints (ledger, to, rule))
         continue;
       g_autoptr (GPtrArray) hints = read_hints (part, from, sqlite3_column_int64 (query, 0), error);
-      if (hints == NULL || !tf_hints_put (ledger, to, rule, hints, tf_column_text (query, 2), tf_column_text (query, 3), error))
+      if (hints == NULL
+          || !tf_hints_put (ledger, to, rule, hints, tf_column_text (query, 2),
+                            tf_column_text (query, 3), error))
         return FALSE;
       *n_hints += hints->len;
     }
@@ -79,22 +85,25 @@ gather_runs (TfLedger *ledger, TfLedger *part, gint64 from, gint64 to, guint *n_
 static gboolean
 gather_places (TfLedger *ledger, TfLedger *part, gint64 from, gint64 to, GError **error)
 {
-  g_autoptr (sqlite3_stmt) query = tf_query (part, error, "SELECT path, size, mtime FROM place WHERE frame = ?1", "i", from);
+  g_autoptr (sqlite3_stmt) query
+      = tf_query (part, error, "SELECT path, size, mtime FROM place WHERE frame = ?1", "i", from);
   int more = -1;
   while (query != NULL && (more = tf_query_step (part, query, error)) > 0)
-    if (!tf_place_put (ledger, to, tf_column_text (query, 0), sqlite3_column_int64 (query, 1), sqlite3_column_int64 (query, 2),
-                       error))
+    if (!tf_place_put (ledger, to, tf_column_text (query, 0), sqlite3_column_int64 (query, 1),
+                       sqlite3_column_int64 (query, 2), error))
       return FALSE;
   return more == 0;
 }
 
 static gboolean
-gather_frame (TfLedger *ledger, TfLedger *part, const TfFrameRow *row, guint *n_frames, guint *n_hints, GError **error)
+gather_frame (TfLedger *ledger, TfLedger *part, const TfFrameRow *row, guint *n_frames,
+              guint *n_hints, GError **error)
 {
   if (!tf_ledger_begin (ledger, error))
     return FALSE;
   gboolean known = tf_ledger_find_frame (ledger, row->checksum, row->hdu, row->plane) != 0;
-  gint64 to = tf_frame_put (ledger, row->path, row->checksum, row->hdu, row->plane, row->info, row->noise_gauss, error);
+  gint64 to = tf_frame_put (ledger, row->path, row->checksum, row->hdu, row->plane, row->info,
+                            row->noise_gauss, error);
   if (to == 0 || !gather_places (ledger, part, row->id, to, error)
       || !gather_runs (ledger, part, row->id, to, n_hints, error))
     {
@@ -106,7 +115,8 @@ gather_frame (TfLedger *ledger, TfLedger *part, const TfFrameRow *row, guint *n_
 }
 
 gboolean
-tf_ledger_gather (TfLedger *ledger, TfLedger *part, guint *n_frames, guint *n_hints, TfNotes *said, GError **error)
+tf_ledger_gather (TfLedger *ledger, TfLedger *part, guint *n_frames, guint *n_hints, TfNotes *said,
+                  GError **error)
 {
   g_return_val_if_fail (ledger != NULL && part != NULL && ledger != part, FALSE);
   guint new_frames = 0, new_hints = 0;
@@ -114,7 +124,8 @@ tf_ledger_gather (TfLedger *ledger, TfLedger *part, guint *n_frames, guint *n_hi
   gboolean ok = frames != NULL;
   for (guint k = 0; ok && k < frames->len; k++)
     ok = gather_frame (ledger, part, g_ptr_array_index (frames, k), &new_frames, &new_hints, error);
-  gint64 acts = tf_value (part, NULL, 0, "SELECT count (*) FROM act WHERE kind NOT IN ('begin', 'person')", "");
+  gint64 acts = tf_value (part, NULL, 0,
+                          "SELECT count (*) FROM act WHERE kind NOT IN ('begin', 'person')", "");
   if (ok && acts > 0 && said != NULL)
     tf_notes_add (said, "gather-acts-left", "si", part->path, (int)acts);
   if (n_frames != NULL)

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* TfFrameInfo as JSON text and back: the plain members only; what a geometry derives from them is made again. */
+/* TfFrameInfo as JSON text and back: the plain members only; what a geometry derives from them is
+ * made again. */
 
 #include "tf-ledger-private.h"
 
@@ -88,7 +89,8 @@ static void
 read_geometry (TfGeometry *g, JsonObject *object)
 {
   *g = (TfGeometry){ 0 };
-  g->projection = (TfProjection)within (tf_json_member_int (object, "projection", 0), TF_PROJECTION_CAR);
+  g->projection
+      = (TfProjection)within (tf_json_member_int (object, "projection", 0), TF_PROJECTION_CAR);
   g->width = (guint)within (tf_json_member_int (object, "width", 0), G_MAXINT32);
   g->height = (guint)within (tf_json_member_int (object, "height", 0), G_MAXINT32);
   read_numbers (object, "crpix", g->crpix, 2);
@@ -101,7 +103,8 @@ read_geometry (TfGeometry *g, JsonObject *object)
     .b0_deg = tf_json_member_number (object, "b0_deg"),
     .stonyhurst_lon_deg = tf_json_member_number (object, "stonyhurst_lon_deg"),
     .carrington_lon_deg = tf_json_member_number (object, "carrington_lon_deg"),
-    .source = (TfObserverSource)within (tf_json_member_int (object, "observer_source", 0), TF_OBSERVER_EARTH),
+    .source = (TfObserverSource)within (tf_json_member_int (object, "observer_source", 0),
+                                        TF_OBSERVER_EARTH),
   };
   TfProjection projection = g->projection;
   TfGeometry plain = *g;
@@ -148,15 +151,19 @@ tf_info_from_text (const char *text, GError **error)
   if (root == NULL || !JSON_NODE_HOLDS_OBJECT (root))
     {
       g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DAMAGED,
-                   _ ("what the ledger holds of a frame cannot be read; run check, or fill the frame into a new ledger"));
+                   _ ("what the ledger holds of a frame cannot be read; run check, or fill the "
+                      "frame into a new ledger"));
       return NULL;
     }
   JsonObject *object = json_node_get_object (root);
   TfFrameInfo info = { 0 };
   read_members (&info, object);
-  g_autoptr (TfNotes) refusal = tf_notes_from_store (tf_json_member_string (object, "refusal"), NULL);
-  g_autoptr (TfNotes) repairs = tf_notes_from_store (tf_json_member_string (object, "repairs"), NULL);
-  g_autoptr (TfNotes) cautions = tf_notes_from_store (tf_json_member_string (object, "cautions"), NULL);
+  g_autoptr (TfNotes) refusal
+      = tf_notes_from_store (tf_json_member_string (object, "refusal"), NULL);
+  g_autoptr (TfNotes) repairs
+      = tf_notes_from_store (tf_json_member_string (object, "repairs"), NULL);
+  g_autoptr (TfNotes) cautions
+      = tf_notes_from_store (tf_json_member_string (object, "cautions"), NULL);
   info.refusal = (TfNote *)(tf_notes_get_n (refusal) > 0 ? tf_notes_get (refusal, 0) : NULL);
   info.repairs = repairs;
   info.cautions = cautions;

@@ -6,16 +6,19 @@
 
 #include "tf-ledger-private.h"
 
-/* 1970-01-01T00:00:00Z as a calendar date, then the wall clock's own seconds: UTC as that machine told it. */
+/* 1970-01-01T00:00:00Z as a calendar date, then the wall clock's own seconds: UTC as that machine
+ * told it. */
 static TfTime
 wall_time (gint64 ms)
 {
   g_autoptr (GDateTime) date = g_date_time_new_from_unix_utc (ms / 1000);
   if (date == NULL)
     return TF_TIME_UNKNOWN;
-  return tf_time_from_calendar (g_date_time_get_year (date), g_date_time_get_month (date), g_date_time_get_day_of_month (date),
-                                g_date_time_get_hour (date), g_date_time_get_minute (date),
-                                g_date_time_get_second (date) + (double)(ms % 1000) / 1000, TF_SCALE_UTC);
+  return tf_time_from_calendar (g_date_time_get_year (date), g_date_time_get_month (date),
+                                g_date_time_get_day_of_month (date), g_date_time_get_hour (date),
+                                g_date_time_get_minute (date),
+                                g_date_time_get_second (date) + (double)(ms % 1000) / 1000,
+                                TF_SCALE_UTC);
 }
 
 static TfJournalEntry *
@@ -51,13 +54,16 @@ GPtrArray *
 tf_ledger_journal (TfLedger *ledger, guint limit, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
-  g_autoptr (GPtrArray) entries = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_journal_entry_free);
-  g_autoptr (sqlite3_stmt) query
-      = tf_query (ledger, error,
-                  "SELECT r.id, a.seq, a.wall, a.kind, p.name, a.subject, coalesce (d.undone, 0) FROM act a"
-                  " JOIN replica r ON r.no = a.replica LEFT JOIN deed d ON d.replica = a.replica AND d.seq = a.seq"
-                  " LEFT JOIN person p ON p.id = d.person ORDER BY a.clock DESC, r.id DESC, a.seq DESC LIMIT ?1",
-                  "i", (gint64)limit);
+  g_autoptr (GPtrArray) entries
+      = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_journal_entry_free);
+  g_autoptr (sqlite3_stmt) query = tf_query (
+      ledger, error,
+      "SELECT r.id, a.seq, a.wall, a.kind, p.name, a.subject, coalesce (d.undone, 0) FROM act a"
+      " JOIN replica r ON r.no = a.replica LEFT JOIN deed d ON d.replica = a.replica AND d.seq = "
+      "a.seq"
+      " LEFT JOIN person p ON p.id = d.person ORDER BY a.clock DESC, r.id DESC, a.seq DESC LIMIT "
+      "?1",
+      "i", (gint64)limit);
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     g_ptr_array_add (entries, read_entry (query));

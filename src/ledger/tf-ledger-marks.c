@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* What people do with outlines, classes and notes: each call appends one act and projects it, in one transaction. */
+/* What people do with outlines, classes and notes: each call appends one act and projects it, in
+ * one transaction. */
 
 #include "tf-ledger-private.h"
 
@@ -37,39 +38,44 @@ find_id (TfLedger *ledger, const char *sql, gint64 key, const char *what, GError
   if (problem != NULL)
     g_propagate_error (error, problem);
   else if (id == NULL)
-    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("the ledger %s has no %s %" G_GINT64_FORMAT), ledger->path,
-                 what, key);
+    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE,
+                 _ ("the ledger %s has no %s %" G_GINT64_FORMAT), ledger->path, what, key);
   return id;
 }
 
 static char *
 person_id (TfLedger *ledger, gint64 key, GError **error)
 {
-  return find_id (ledger, "SELECT lower (hex (uid)) FROM person WHERE id = ?1", key, _ ("person"), error);
+  return find_id (ledger, "SELECT lower (hex (uid)) FROM person WHERE id = ?1", key, _ ("person"),
+                  error);
 }
 
 static char *
 frame_id (TfLedger *ledger, gint64 key, GError **error)
 {
-  return find_id (ledger, "SELECT lower (hex (cid)) FROM frame WHERE id = ?1", key, _ ("frame"), error);
+  return find_id (ledger, "SELECT lower (hex (cid)) FROM frame WHERE id = ?1", key, _ ("frame"),
+                  error);
 }
 
 static char *
 region_id (TfLedger *ledger, gint64 key, GError **error)
 {
-  return find_id (ledger, "SELECT lower (hex (uid)) FROM region WHERE id = ?1", key, _ ("region"), error);
+  return find_id (ledger, "SELECT lower (hex (uid)) FROM region WHERE id = ?1", key, _ ("region"),
+                  error);
 }
 
 static char *
 hint_id (TfLedger *ledger, gint64 key, GError **error)
 {
-  return find_id (ledger, "SELECT lower (hex (cid)) FROM hint WHERE id = ?1", key, _ ("hint"), error);
+  return find_id (ledger, "SELECT lower (hex (cid)) FROM hint WHERE id = ?1", key, _ ("hint"),
+                  error);
 }
 
 static char *
 mark_id (TfLedger *ledger, gint64 key, GError **error)
 {
-  return find_id (ledger, "SELECT lower (hex (uid)) FROM mark WHERE id = ?1", key, _ ("mark"), error);
+  return find_id (ledger, "SELECT lower (hex (uid)) FROM mark WHERE id = ?1", key, _ ("mark"),
+                  error);
 }
 
 static gboolean
@@ -89,14 +95,17 @@ end_deed (TfLedger *ledger, gboolean ok, GError **error)
   return ok;
 }
 
-/* -- keep ------------------------------------------------------------------------------------------- */
-/* "T2013-0412": letter, year of the frame, one more than the highest there ever was in this ledger. */
+/* -- keep
+ * ------------------------------------------------------------------------------------------- */
+/* "T2013-0412": letter, year of the frame, one more than the highest there ever was in this
+ * ledger. */
 static char *
 next_number (TfLedger *ledger, gint64 frame)
 {
   double time = NAN;
   {
-    g_autoptr (sqlite3_stmt) query = tf_query (ledger, NULL, "SELECT time FROM frame WHERE id = ?1", "i", frame);
+    g_autoptr (sqlite3_stmt) query
+        = tf_query (ledger, NULL, "SELECT time FROM frame WHERE id = ?1", "i", frame);
     if (query != NULL && tf_query_step (ledger, query, NULL) > 0)
       time = tf_column_double (query, 0);
   }
@@ -104,8 +113,9 @@ next_number (TfLedger *ledger, gint64 frame)
   tf_time_calendar ((TfTime){ time }, &year, NULL, NULL, NULL, NULL, NULL);
   g_autofree char *head = g_strdup_printf ("%c%04d-", ledger->letter, year);
   gint64 last = tf_value (ledger, NULL, 0,
-                          "SELECT max (CAST (substr (number, 7) AS INTEGER)) FROM region WHERE substr (number, 1, 6) = ?1", "t",
-                          head);
+                          "SELECT max (CAST (substr (number, 7) AS INTEGER)) FROM region WHERE "
+                          "substr (number, 1, 6) = ?1",
+                          "t", head);
   return g_strdup_printf ("%s%04" G_GINT64_FORMAT, head, last + 1);
 }
 
@@ -134,20 +144,24 @@ region_of_followed (TfLedger *ledger, const TfMarkDeed *deed, Keep *keep, GError
   keep->follows = mark_id (ledger, deed->follows, error);
   if (keep->follows == NULL)
     return 0;
-  if (tf_value (ledger, NULL, 0, "SELECT frame FROM mark WHERE id = ?1", "i", deed->follows) != deed->frame)
+  if (tf_value (ledger, NULL, 0, "SELECT frame FROM mark WHERE id = ?1", "i", deed->follows)
+      != deed->frame)
     {
-      state_error (error, _ ("a mark can only take the place of a mark on the same frame; keep it as a mark of the region"));
+      state_error (error, _ ("a mark can only take the place of a mark on the same frame; keep it "
+                             "as a mark of the region"));
       return 0;
     }
   if (keep->hint == 0)
-    keep->hint = tf_value (ledger, NULL, 0, "SELECT hint FROM mark WHERE id = ?1", "i", deed->follows);
+    keep->hint
+        = tf_value (ledger, NULL, 0, "SELECT hint FROM mark WHERE id = ?1", "i", deed->follows);
   return tf_value (ledger, error, 0, "SELECT region FROM mark WHERE id = ?1", "i", deed->follows);
 }
 
 static gboolean
 find_region (TfLedger *ledger, const TfMarkDeed *deed, Keep *keep, GError **error)
 {
-  gint64 region = deed->follows != 0 ? region_of_followed (ledger, deed, keep, error) : deed->region;
+  gint64 region
+      = deed->follows != 0 ? region_of_followed (ledger, deed, keep, error) : deed->region;
   if (deed->follows != 0 && region == 0)
     return FALSE;
   if (region == 0)
@@ -157,7 +171,8 @@ find_region (TfLedger *ledger, const TfMarkDeed *deed, Keep *keep, GError **erro
       return TRUE;
     }
   keep->ids.region = region_id (ledger, region, error);
-  keep->number = tf_text_value (ledger, NULL, "SELECT number FROM region WHERE id = ?1", "i", region);
+  keep->number
+      = tf_text_value (ledger, NULL, "SELECT number FROM region WHERE id = ?1", "i", region);
   return keep->ids.region != NULL && keep->number != NULL;
 }
 
@@ -173,8 +188,8 @@ find_ids (TfLedger *ledger, const TfMarkDeed *deed, Keep *keep, GError **error)
     return FALSE;
   keep->ids.mark = tf_uuid7 (ledger->now (ledger->now_data));
   keep->outline = tf_outline_dup_text (deed->outline);
-  return tf_measure_put (ledger, deed->frame, keep->ids.frame, deed->method, keep->outline, deed->measure, TF_VERSION,
-                         &keep->measure, error)
+  return tf_measure_put (ledger, deed->frame, keep->ids.frame, deed->method, keep->outline,
+                         deed->measure, TF_VERSION, &keep->measure, error)
          != 0;
 }
 
@@ -216,7 +231,8 @@ keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error)
 gint64
 tf_ledger_keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error)
 {
-  g_return_val_if_fail (ledger != NULL && deed != NULL && deed->outline != NULL && deed->measure != NULL, 0);
+  g_return_val_if_fail (
+      ledger != NULL && deed != NULL && deed->outline != NULL && deed->measure != NULL, 0);
   g_return_val_if_fail (deed->method != NULL, 0);
   if (!tf_ledger_begin (ledger, error))
     return 0;
@@ -224,7 +240,8 @@ tf_ledger_keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error)
   return end_deed (ledger, id != 0, error) ? id : 0;
 }
 
-/* -- withdraw, drop --------------------------------------------------------------------------------- */
+/* -- withdraw, drop
+ * --------------------------------------------------------------------------------- */
 static gboolean
 withdraw (TfLedger *ledger, gint64 mark, gint64 person, GError **error)
 {
@@ -232,14 +249,19 @@ withdraw (TfLedger *ledger, gint64 mark, gint64 person, GError **error)
   if (ids.person == NULL || (ids.mark = mark_id (ledger, mark, error)) == NULL)
     return FALSE;
   if (tf_value (ledger, NULL, 0, "SELECT live FROM mark WHERE id = ?1", "i", mark) == 0)
-    return state_error (error, _ ("that mark has been taken back or replaced already; open the ledger again to see it as it is"));
+    return state_error (error, _ ("that mark has been taken back or replaced already; open the "
+                                  "ledger again to see it as it is"));
   if (tf_value (ledger, NULL, 0, "SELECT person FROM mark WHERE id = ?1", "i", mark) != person)
-    return state_error (error, _ ("that mark is another person's; only whoever made a mark takes it back"));
-  ids.region = tf_text_value (ledger, error,
-                              "SELECT lower (hex (g.uid)) FROM mark m JOIN region g ON g.id = m.region WHERE m.id = ?1", "i",
-                              mark);
-  ids.frame = tf_text_value (ledger, error,
-                             "SELECT lower (hex (f.cid)) FROM mark m JOIN frame f ON f.id = m.frame WHERE m.id = ?1", "i", mark);
+    return state_error (
+        error, _ ("that mark is another person's; only whoever made a mark takes it back"));
+  ids.region = tf_text_value (
+      ledger, error,
+      "SELECT lower (hex (g.uid)) FROM mark m JOIN region g ON g.id = m.region WHERE m.id = ?1",
+      "i", mark);
+  ids.frame = tf_text_value (
+      ledger, error,
+      "SELECT lower (hex (f.cid)) FROM mark m JOIN frame f ON f.id = m.frame WHERE m.id = ?1", "i",
+      mark);
   g_autoptr (JsonBuilder) body = json_builder_new ();
   json_builder_begin_object (body);
   tf_json_string (body, "person", ids.person);
@@ -255,7 +277,8 @@ gboolean
 tf_ledger_withdraw (TfLedger *ledger, gint64 mark, gint64 person, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, FALSE);
-  return tf_ledger_begin (ledger, error) && end_deed (ledger, withdraw (ledger, mark, person, error), error);
+  return tf_ledger_begin (ledger, error)
+         && end_deed (ledger, withdraw (ledger, mark, person, error), error);
 }
 
 static gboolean
@@ -264,7 +287,9 @@ drop (TfLedger *ledger, gint64 hint, gint64 person, GError **error)
   g_auto (Ids) ids = { .person = person_id (ledger, person, error) };
   if (ids.person == NULL || (ids.hint = hint_id (ledger, hint, error)) == NULL)
     return FALSE;
-  if (tf_value (ledger, NULL, 0, "SELECT 1 FROM dropped WHERE hint = ?1 AND person = ?2", "ii", hint, person) != 0)
+  if (tf_value (ledger, NULL, 0, "SELECT 1 FROM dropped WHERE hint = ?1 AND person = ?2", "ii",
+                hint, person)
+      != 0)
     return state_error (error, _ ("that hint has been dropped already"));
   g_autoptr (JsonBuilder) body = json_builder_new ();
   json_builder_begin_object (body);
@@ -279,10 +304,12 @@ gboolean
 tf_ledger_drop_hint (TfLedger *ledger, gint64 hint, gint64 person, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, FALSE);
-  return tf_ledger_begin (ledger, error) && end_deed (ledger, drop (ledger, hint, person, error), error);
+  return tf_ledger_begin (ledger, error)
+         && end_deed (ledger, drop (ledger, hint, person, error), error);
 }
 
-/* -- notes and classes ------------------------------------------------------------------------------ */
+/* -- notes and classes
+ * ------------------------------------------------------------------------------ */
 static gboolean
 set_note (TfLedger *ledger, gint64 region, gint64 person, const char *text, GError **error)
 {
@@ -300,15 +327,17 @@ set_note (TfLedger *ledger, gint64 region, gint64 person, const char *text, GErr
 }
 
 gboolean
-tf_ledger_set_note (TfLedger *ledger, gint64 region, gint64 person, const char *text, GError **error)
+tf_ledger_set_note (TfLedger *ledger, gint64 region, gint64 person, const char *text,
+                    GError **error)
 {
   g_return_val_if_fail (ledger != NULL && text != NULL, FALSE);
-  return tf_ledger_begin (ledger, error) && end_deed (ledger, set_note (ledger, region, person, text, error), error);
+  return tf_ledger_begin (ledger, error)
+         && end_deed (ledger, set_note (ledger, region, person, text, error), error);
 }
 
 static gboolean
-set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text, const char *evidence,
-           GError **error)
+set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text,
+           const char *evidence, GError **error)
 {
   g_auto (Ids) ids = { .person = person_id (ledger, person, error) };
   if (ids.person == NULL || (ids.region = region_id (ledger, region, error)) == NULL
@@ -327,10 +356,11 @@ set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const c
 }
 
 gboolean
-tf_ledger_set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text,
-                     const char *evidence, GError **error)
+tf_ledger_set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person,
+                     const char *class_text, const char *evidence, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && class_text != NULL, FALSE);
   return tf_ledger_begin (ledger, error)
-         && end_deed (ledger, set_class (ledger, region, frame, person, class_text, evidence, error), error);
+         && end_deed (
+             ledger, set_class (ledger, region, frame, person, class_text, evidence, error), error);
 }

@@ -25,13 +25,21 @@ typedef struct
 } Column;
 
 #define AT(member) offsetof (TfMeasure, member)
-#define POLE(p)                                                                                                                \
-  { #p "_flux_mx", NUMBER, AT (p.flux_mx) }, { #p "_flux_sigma_mx", NUMBER, AT (p.flux_sigma_mx) },                            \
-      { #p "_flux_noise_mx", NUMBER, AT (p.flux_noise_mx) }, { #p "_lon_deg", NUMBER, AT (p.lon_deg) },                        \
-      { #p "_carrington_lon_deg", NUMBER, AT (p.carrington_lon_deg) }, { #p "_lat_deg", NUMBER, AT (p.lat_deg) },              \
-      { #p "_place_sigma_deg", NUMBER, AT (p.place_sigma_deg) }, { #p "_place_noise_deg", NUMBER, AT (p.place_noise_deg) },    \
-      { #p "_rms_radius_deg", NUMBER, AT (p.rms_radius_deg) }, { #p "_pixels", COUNT, AT (p.pixels) },                         \
-      { #p "_area_msh", NUMBER, AT (p.magnetic_area_msh) }, { #p "_pinned", WHOLE, AT (p.pinned) }
+#define POLE(p)                                                                                    \
+  { #p "_flux_mx", NUMBER, AT (p.flux_mx) },                                                       \
+      { #p "_flux_sigma_mx", NUMBER, AT (p.flux_sigma_mx) },                                       \
+      { #p "_flux_noise_mx", NUMBER, AT (p.flux_noise_mx) },                                       \
+      { #p "_lon_deg", NUMBER, AT (p.lon_deg) },                                                   \
+      { #p "_carrington_lon_deg", NUMBER, AT (p.carrington_lon_deg) },                             \
+      { #p "_lat_deg", NUMBER, AT (p.lat_deg) },                                                   \
+      { #p "_place_sigma_deg", NUMBER, AT (p.place_sigma_deg) },                                   \
+      { #p "_place_noise_deg", NUMBER, AT (p.place_noise_deg) },                                   \
+      { #p "_rms_radius_deg", NUMBER, AT (p.rms_radius_deg) },                                     \
+      { #p "_pixels", COUNT, AT (p.pixels) },                                                      \
+      { #p "_area_msh", NUMBER, AT (p.magnetic_area_msh) },                                        \
+  {                                                                                                \
+#p "_pinned", WHOLE, AT(p.pinned)                                                              \
+  }
 
 G_STATIC_ASSERT (sizeof (TfFieldUsed) == sizeof (int) && sizeof (TfFloorKind) == sizeof (int));
 
@@ -106,7 +114,8 @@ tf_measure_from_row (TfMeasure *measure, sqlite3_stmt *query, int column)
       else
         *(int *)member = sqlite3_column_int (query, at);
     }
-  measure->cautions = tf_notes_from_store (tf_column_text (query, column + (int)G_N_ELEMENTS (columns)), NULL);
+  measure->cautions
+      = tf_notes_from_store (tf_column_text (query, column + (int)G_N_ELEMENTS (columns)), NULL);
 }
 
 static int
@@ -124,7 +133,8 @@ static char *
 insert_sql (void)
 {
   g_autofree char *names = tf_measure_dup_columns ("");
-  GString *sql = g_string_new ("INSERT OR IGNORE INTO measure (cid, frame, method, program, time_text, year, cautions, ");
+  GString *sql = g_string_new (
+      "INSERT OR IGNORE INTO measure (cid, frame, method, program, time_text, year, cautions, ");
   g_string_append_printf (sql, "%s) VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7", names);
   for (guint k = 0; k < tf_measure_n_columns (); k++)
     g_string_append_printf (sql, ", ?%u", k + 8);
@@ -133,8 +143,8 @@ insert_sql (void)
 }
 
 static gboolean
-insert (TfLedger *ledger, gint64 frame, gint64 method, const char *cid, const TfMeasure *measure, const char *program,
-        GError **error)
+insert (TfLedger *ledger, gint64 frame, gint64 method, const char *cid, const TfMeasure *measure,
+        const char *program, GError **error)
 {
   g_autofree char *sql = insert_sql ();
   g_autofree char *time = tf_time_dup_iso (measure->time, 0);
@@ -163,11 +173,13 @@ tf_method_key (TfLedger *ledger, const char *text, GError **error)
 }
 
 gint64
-tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method, const char *outline_text,
-                const TfMeasure *measure, const char *program, char **cid_out, GError **error)
+tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method,
+                const char *outline_text, const TfMeasure *measure, const char *program,
+                char **cid_out, GError **error)
 {
   gint64 method_key = tf_method_key (ledger, method, error);
-  g_autofree char *cid = tf_content_id ("tiltfield measure 1", frame_cid, method, outline_text, NULL);
+  g_autofree char *cid
+      = tf_content_id ("tiltfield measure 1", frame_cid, method, outline_text, NULL);
   if (method_key == 0)
     return 0;
   gint64 key = tf_value (ledger, NULL, 0, "SELECT id FROM measure WHERE cid = ?1", "h", cid);
@@ -187,20 +199,24 @@ tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const cha
 static char *
 frame_cid (TfLedger *ledger, gint64 frame, GError **error)
 {
-  char *cid = tf_text_value (ledger, error, "SELECT lower (hex (cid)) FROM frame WHERE id = ?1", "i", frame);
+  char *cid = tf_text_value (ledger, error, "SELECT lower (hex (cid)) FROM frame WHERE id = ?1",
+                             "i", frame);
   if (cid == NULL && error != NULL && *error == NULL)
-    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("the ledger %s has no frame %" G_GINT64_FORMAT), ledger->path,
-                 frame);
+    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE,
+                 _ ("the ledger %s has no frame %" G_GINT64_FORMAT), ledger->path, frame);
   return cid;
 }
 
 gboolean
-tf_ledger_has_measure (TfLedger *ledger, gint64 frame, const TfOutline *outline, const char *method, TfMeasure *measure)
+tf_ledger_has_measure (TfLedger *ledger, gint64 frame, const TfOutline *outline, const char *method,
+                       TfMeasure *measure)
 {
   g_return_val_if_fail (ledger != NULL && outline != NULL && method != NULL, FALSE);
   g_autofree char *frame_id = frame_cid (ledger, frame, NULL);
   g_autofree char *text = tf_outline_dup_text (outline);
-  g_autofree char *cid = frame_id != NULL ? tf_content_id ("tiltfield measure 1", frame_id, method, text, NULL) : NULL;
+  g_autofree char *cid = frame_id != NULL
+                             ? tf_content_id ("tiltfield measure 1", frame_id, method, text, NULL)
+                             : NULL;
   if (cid == NULL)
     return FALSE;
   g_autofree char *names = tf_measure_dup_columns ("e.");
@@ -214,8 +230,8 @@ tf_ledger_has_measure (TfLedger *ledger, gint64 frame, const TfOutline *outline,
 }
 
 gboolean
-tf_ledger_add_measures (TfLedger *ledger, guint n, const gint64 *frames, TfOutline *const *outlines, char *const *methods,
-                        const TfMeasure *measures, GError **error)
+tf_ledger_add_measures (TfLedger *ledger, guint n, const gint64 *frames, TfOutline *const *outlines,
+                        char *const *methods, const TfMeasure *measures, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, FALSE);
   if (n == 0)
@@ -227,7 +243,9 @@ tf_ledger_add_measures (TfLedger *ledger, guint n, const gint64 *frames, TfOutli
       g_autofree char *cid = frame_cid (ledger, frames[k], error);
       g_autofree char *text = tf_outline_dup_text (outlines[k]);
       if (cid == NULL
-          || tf_measure_put (ledger, frames[k], cid, methods[k], text, &measures[k], TF_VERSION, NULL, error) == 0)
+          || tf_measure_put (ledger, frames[k], cid, methods[k], text, &measures[k], TF_VERSION,
+                             NULL, error)
+                 == 0)
         {
           tf_ledger_rollback (ledger);
           return FALSE;

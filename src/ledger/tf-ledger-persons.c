@@ -2,8 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Persons. A person's id is made from the name, so that the desk "north" is one person in every ledger it works in; whether two
- * people share a name is for keys to say, once parcels are signed. */
+/* Persons. A person's id is made from the name, so that the desk "north" is one person in every
+ * ledger it works in; whether two people share a name is for keys to say, once parcels are signed. */
 
 #include "tf-ledger-private.h"
 
@@ -28,10 +28,12 @@ gint64
 tf_ledger_person (TfLedger *ledger, const char *name, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && name != NULL, 0);
-  g_autofree char *clean = g_strstrip (g_utf8_normalize (name, -1, G_NORMALIZE_NFC) ?: g_strdup (""));
+  g_autofree char *clean
+      = g_strstrip (g_utf8_normalize (name, -1, G_NORMALIZE_NFC) ?: g_strdup (""));
   if (*clean == '\0')
     {
-      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("a person needs a name; say who judges"));
+      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE,
+                   _ ("a person needs a name; say who judges"));
       return 0;
     }
   g_autofree char *hash = tf_content_id ("tiltfield person 1", clean, NULL);
@@ -58,7 +60,8 @@ tf_ledger_dup_persons (TfLedger *ledger)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GPtrArray) names = g_ptr_array_new ();
-  g_autoptr (sqlite3_stmt) query = tf_query (ledger, NULL, "SELECT name FROM person ORDER BY id", "");
+  g_autoptr (sqlite3_stmt) query
+      = tf_query (ledger, NULL, "SELECT name FROM person ORDER BY id", "");
   while (query != NULL && tf_query_step (ledger, query, NULL) > 0)
     g_ptr_array_add (names, g_strdup (tf_column_text (query, 0)));
   g_ptr_array_add (names, NULL);

@@ -2,27 +2,32 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The narrow table behind the wings: one row for every live mark and every open hint. A hint is open when it is of the newest
- * rule run on its frame, no live mark came from it and nobody dropped it. */
+/* The narrow table behind the wings: one row for every live mark and every open hint. A hint is
+ * open when it is of the newest rule run on its frame, no live mark came from it and nobody
+ * dropped it. */
 
 #include "tf-ledger-private.h"
 
 #include <math.h>
 
-#define MEASURED                                                                                                               \
-  " e.time, e.year, e.lat_deg, e.flux_unsigned_mx, e.axis_tilt_deg, e.mu, e.cmd_deg, e.separation_deg, e.imbalance,"           \
+#define MEASURED                                                                                   \
+  " e.time, e.year, e.lat_deg, e.flux_unsigned_mx, e.axis_tilt_deg, e.mu, e.cmd_deg, "             \
+  "e.separation_deg, e.imbalance,"                                                                 \
   " e.leading, e.leading_sure,"
-#define MEASURED_2                                                                                                             \
-  " e.axis_tilt_deg IS NULL AND e.axis_bearing_deg IS NOT NULL,"                                                               \
-  " coalesce (1 IN (coalesce (e.witness_a, 0), coalesce (e.witness_b, 0), coalesce (e.witness_c, 0))"                          \
-  " AND -1 IN (coalesce (e.witness_a, 0), coalesce (e.witness_b, 0), coalesce (e.witness_c, 0)), 0)"
-#define MARK_POINTS                                                                                                            \
-  "SELECT 0, m.id, m.frame, m.region," MEASURED " e.leading = 0," MEASURED_2                                                   \
+#define MEASURED_2                                                                                 \
+  " e.axis_tilt_deg IS NULL AND e.axis_bearing_deg IS NOT NULL,"                                   \
+  " coalesce (1 IN (coalesce (e.witness_a, 0), coalesce (e.witness_b, 0), coalesce (e.witness_c, " \
+  "0))"                                                                                            \
+  " AND -1 IN (coalesce (e.witness_a, 0), coalesce (e.witness_b, 0), coalesce (e.witness_c, 0)), " \
+  "0)"
+#define MARK_POINTS                                                                                \
+  "SELECT 0, m.id, m.frame, m.region," MEASURED " e.leading = 0," MEASURED_2                       \
   " FROM mark m JOIN measure e ON e.id = m.measure WHERE m.live = 1"
-#define HINT_POINTS                                                                                                            \
-  "SELECT 1, h.id, h.frame, 0," MEASURED " h.unipolar," MEASURED_2 " FROM hint h JOIN measure e ON e.id = h.measure"           \
-  " WHERE h.rule = (SELECT u.rule FROM run u WHERE u.frame = h.frame ORDER BY u.id DESC LIMIT 1)"                              \
-  " AND NOT EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id)"                                                              \
+#define HINT_POINTS                                                                                \
+  "SELECT 1, h.id, h.frame, 0," MEASURED " h.unipolar," MEASURED_2                                 \
+  " FROM hint h JOIN measure e ON e.id = h.measure"                                                \
+  " WHERE h.rule = (SELECT u.rule FROM run u WHERE u.frame = h.frame ORDER BY u.id DESC LIMIT 1)"  \
+  " AND NOT EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id)"                                  \
   " AND NOT EXISTS (SELECT 1 FROM mark m WHERE m.hint = h.id AND m.live = 1)"
 
 const char tf_point_all_sql[] = MARK_POINTS " UNION ALL " HINT_POINTS;
@@ -46,7 +51,8 @@ gboolean
 tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error)
 {
   return tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND frame = ?1", "i", frame)
-         && tf_run (ledger, error, "INSERT INTO point " HINT_POINTS " AND h.frame = ?1", "i", frame);
+         && tf_run (ledger, error, "INSERT INTO point " HINT_POINTS " AND h.frame = ?1", "i",
+                    frame);
 }
 
 static void
@@ -96,7 +102,9 @@ static gboolean
 in_order (const GArray *points)
 {
   for (guint k = 1; k < points->len; k++)
-    if (compare_points (&g_array_index (points, TfPoint, k - 1), &g_array_index (points, TfPoint, k)) > 0)
+    if (compare_points (&g_array_index (points, TfPoint, k - 1),
+                        &g_array_index (points, TfPoint, k))
+        > 0)
       return FALSE;
   return TRUE;
 }

@@ -3,11 +3,11 @@
  */
 #pragma once
 
-/* What the files of this folder share. Ids inside C are lower-case hex text; in the file they are blobs.
+/* What the files of this folder share. Ids inside C are lower-case hex text; in the file they are
+ * blobs.
  *
  * Statements are kept by the ledger and handed out by tf_query(); an autoptr to one resets it and
- * gives it back, it never owns it. The same text must not be in use twice at a time.
- */
+ * gives it back, it never owns it. The same text must not be in use twice at a time. */
 
 #include <sodium.h>
 #include <sqlite3.h>
@@ -17,9 +17,9 @@
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION 1
-#define TF_ID_HEX 32  /* digits of a UUID */
-#define TF_CID_HEX 64 /* digits of a content id or hash */
+#define TF_LEDGER_VERSION     1
+#define TF_ID_HEX             32 /* digits of a UUID */
+#define TF_CID_HEX            64 /* digits of a content id or hash */
 
 struct _TfLedger
 {
@@ -33,15 +33,16 @@ struct _TfLedger
   GHashTable *statements; /* SQL text -> sqlite3_stmt, owned */
   TfNote *read_only;
   TfNotes *notices;
-  gint64 replica;      /* this copy's own replica; 0 until its first deed */
-  char *replica_id;    /* hex */
+  gint64 replica;          /* this copy's own replica; 0 until its first deed */
+  char *replica_id;        /* hex */
   gboolean replica_is_new; /* begun in the transaction in hand */
   char letter;
 };
 
-/* -- tf-ledger-sql.c ------------------------------------------------------------------------------- */
-/* Binding letters: i gint64; k gint64 key (0 is NULL); d double (NaN is NULL); t text (NULL allowed); h hex text as a blob;
- * b bytes: const void *, gsize. */
+/* -- tf-ledger-sql.c
+ * ------------------------------------------------------------------------------- */
+/* Binding letters: i gint64; k gint64 key (0 is NULL); d double (NaN is NULL); t text (NULL
+ * allowed); h hex text as a blob; b bytes: const void *, gsize. */
 sqlite3_stmt *tf_query (TfLedger *ledger, GError **error, const char *sql, const char *types, ...);
 /* 1: a row; 0: no more; -1: error. */
 int tf_query_step (TfLedger *ledger, sqlite3_stmt *query, GError **error);
@@ -49,22 +50,26 @@ void tf_query_done (sqlite3_stmt *query);
 GHashTable *tf_statements_new (void);
 gboolean tf_run (TfLedger *ledger, GError **error, const char *sql, const char *types, ...);
 /* First column of the first row; @fallback when there is none, it is NULL, or on error. */
-gint64 tf_value (TfLedger *ledger, GError **error, gint64 fallback, const char *sql, const char *types, ...);
+gint64 tf_value (TfLedger *ledger, GError **error, gint64 fallback, const char *sql,
+                 const char *types, ...);
 char *tf_text_value (TfLedger *ledger, GError **error, const char *sql, const char *types, ...);
 /* Several statements without results. */
 gboolean tf_run_script (TfLedger *ledger, const char *sql, GError **error);
 
 double tf_column_double (sqlite3_stmt *query, int column); /* NULL is NaN */
-const char *tf_column_text (sqlite3_stmt *query, int column); /* NULL is "" ; borrowed until the next step */
+const char *
+tf_column_text (sqlite3_stmt *query, int column); /* NULL is "" ; borrowed until the next step */
 char *tf_column_dup_hex (sqlite3_stmt *query, int column);
 
-/* A write: read-only is an error, the lock is waited for. After a failure inside: tf_ledger_rollback. */
+/* A write: read-only is an error, the lock is waited for. After a failure inside:
+ * tf_ledger_rollback. */
 gboolean tf_ledger_begin (TfLedger *ledger, GError **error);
 gboolean tf_ledger_commit (TfLedger *ledger, GError **error);
 void tf_ledger_rollback (TfLedger *ledger);
 void tf_ledger_set_error (GError **error, sqlite3 *db, int rc, const char *path);
 
-/* -- tf-ledger-digest.c ---------------------------------------------------------------------------- */
+/* -- tf-ledger-digest.c
+ * ---------------------------------------------------------------------------- */
 /* BLAKE2b over parts, each with its length before it. */
 typedef struct
 {
@@ -77,10 +82,11 @@ void tf_digest_add_int (TfDigest *digest, gint64 value);
 char *tf_digest_end (TfDigest *digest); /* 64 hex digits */
 /* Digest of columns @first .. @last of the row in hand, types included. */
 char *tf_digest_row (sqlite3_stmt *query, const char *tag, int first, int last);
-char *tf_uuid7 (gint64 now_ms);               /* 32 hex digits */
+char *tf_uuid7 (gint64 now_ms);                                    /* 32 hex digits */
 char *tf_content_id (const char *tag, ...) G_GNUC_NULL_TERMINATED; /* of texts; 64 hex digits */
 
-/* -- tf-ledger-schema.c ---------------------------------------------------------------------------- */
+/* -- tf-ledger-schema.c
+ * ---------------------------------------------------------------------------- */
 typedef struct
 {
   int to;                 /* user_version after it */
@@ -91,21 +97,26 @@ extern const char tf_ledger_projection_sql[];    /* the tables that check makes 
 /* @is_new: an empty file becomes a ledger. */
 gboolean tf_ledger_migrate (TfLedger *ledger, int from, gboolean is_new, GError **error);
 
-/* -- tf-ledger-replica.c --------------------------------------------------------------------------- */
+/* -- tf-ledger-replica.c
+ * --------------------------------------------------------------------------- */
 gboolean tf_replica_choose (TfLedger *ledger, GError **error);
 gboolean tf_replica_begin (TfLedger *ledger, GError **error); /* inside a transaction */
 void tf_replica_store_state (TfLedger *ledger);               /* after a commit */
 
-/* -- tf-ledger-acts.c ------------------------------------------------------------------------------ */
+/* -- tf-ledger-acts.c
+ * ------------------------------------------------------------------------------ */
 /* Appends one act and projects it; inside a transaction. @body: an object built to its end. */
-gboolean tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuilder *body, GError **error);
-char *tf_act_hash (const char *before, const char *replica, gint64 seq, gint64 clock, gint64 wall, const char *kind,
-                   const char *subject, const void *body, gsize n_body, const char *after);
+gboolean tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuilder *body,
+                        GError **error);
+char *tf_act_hash (const char *before, const char *replica, gint64 seq, gint64 clock, gint64 wall,
+                   const char *kind, const char *subject, const void *body, gsize n_body,
+                   const char *after);
 /* "replica:seq ..." of what an act replaces, sorted. */
 char *tf_act_dup_after (TfLedger *ledger, gint64 replica, gint64 seq, GError **error);
 char *tf_subject (char tag, ...) G_GNUC_NULL_TERMINATED; /* of ids */
 
-/* -- tf-ledger-project.c --------------------------------------------------------------------------- */
+/* -- tf-ledger-project.c
+ * --------------------------------------------------------------------------- */
 typedef struct
 {
   gint64 replica, seq, clock;
@@ -115,35 +126,43 @@ typedef struct
 gboolean tf_project_act (TfLedger *ledger, const TfAct *act, GError **error);
 gboolean tf_act_is_deed (const char *kind); /* can be undone */
 
-/* -- tf-ledger-points.c ---------------------------------------------------------------------------- */
+/* -- tf-ledger-points.c
+ * ---------------------------------------------------------------------------- */
 gboolean tf_point_refresh_mark (TfLedger *ledger, gint64 mark, GError **error);
 gboolean tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error);
 gboolean tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error);
-extern const char tf_point_all_sql[]; /* every point as it should be, in the order of the table's columns */
+extern const char
+    tf_point_all_sql[]; /* every point as it should be, in the order of the table's columns */
 
-/* -- tf-ledger-frames.c, tf-ledger-hints.c: inside a transaction ------------------------------------- */
-gint64 tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane, const TfFrameInfo *info,
-                     double noise_gauss, GError **error);
-gboolean tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime, GError **error);
-gboolean tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints, const char *method,
-                       const char *program, GError **error);
-
-/* -- tf-ledger-measures.c -------------------------------------------------------------------------- */
-gint64 tf_method_key (TfLedger *ledger, const char *text, GError **error);
-/* Puts it in once; its local key, 0 on error. @program: version that measured. @cid: (out) (nullable) */
-gint64 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method,
-                       const char *outline_text, const TfMeasure *measure, const char *program, char **cid,
+/* -- tf-ledger-frames.c, tf-ledger-hints.c: inside a transaction
+ * ------------------------------------- */
+gint64 tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, int hdu, int plane,
+                     const TfFrameInfo *info, double noise_gauss, GError **error);
+gboolean tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime,
                        GError **error);
+gboolean tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
+                       const char *method, const char *program, GError **error);
+
+/* -- tf-ledger-measures.c
+ * -------------------------------------------------------------------------- */
+gint64 tf_method_key (TfLedger *ledger, const char *text, GError **error);
+/* Puts it in once; its local key, 0 on error. @program: version that measured. @cid: (out)
+ * (nullable) */
+gint64 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method,
+                       const char *outline_text, const TfMeasure *measure, const char *program,
+                       char **cid, GError **error);
 /* Reads the columns of tf_measure_columns_sql beginning at @column. */
 void tf_measure_from_row (TfMeasure *measure, sqlite3_stmt *query, int column);
 char *tf_measure_dup_columns (const char *alias); /* "e.time, e.field_used, ..." */
 guint tf_measure_n_columns (void);
 
-/* -- tf-ledger-info.c ------------------------------------------------------------------------------ */
+/* -- tf-ledger-info.c
+ * ------------------------------------------------------------------------------ */
 char *tf_info_dup_text (const TfFrameInfo *info);
 TfFrameInfo *tf_info_from_text (const char *text, GError **error);
 
-/* -- tf-ledger-check.c ----------------------------------------------------------------------------- */
+/* -- tf-ledger-check.c
+ * ----------------------------------------------------------------------------- */
 gboolean tf_digest_store (TfLedger *ledger, const char *table, gint64 id, GError **error);
 extern const char *const tf_digest_tables[]; /* NULL-ended */
 

@@ -2,8 +2,9 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* From acts to what they say. The same functions serve the writing of an act and the making anew by check: they read acts,
- * machine rows and projections, and write projections only. What a subject holds is always worked out from its acts. */
+/* From acts to what they say. The same functions serve the writing of an act and the making anew
+ * by check: they read acts, machine rows and projections, and write projections only. What a
+ * subject holds is always worked out from its acts. */
 
 #include "tf-ledger-private.h"
 
@@ -13,9 +14,10 @@
 #include "tf-json.h"
 
 /* The act that speaks for a subject: the last one that stands. */
-#define CURRENT_SQL                                                                                                            \
-  "SELECT a.replica, a.seq, a.clock, a.kind, CAST (a.body AS TEXT) FROM act a JOIN deed d ON d.replica = a.replica"            \
-  " AND d.seq = a.seq AND d.undone = 0 JOIN replica r ON r.no = a.replica WHERE a.subject = ?1"                                \
+#define CURRENT_SQL                                                                                \
+  "SELECT a.replica, a.seq, a.clock, a.kind, CAST (a.body AS TEXT) FROM act a JOIN deed d ON "     \
+  "d.replica = a.replica"                                                                          \
+  " AND d.seq = a.seq AND d.undone = 0 JOIN replica r ON r.no = a.replica WHERE a.subject = ?1"    \
   " AND a.kind NOT IN ('undo', 'redo') ORDER BY a.clock DESC, r.id DESC, a.seq DESC LIMIT 1"
 
 typedef struct
@@ -38,7 +40,8 @@ static gboolean
 damaged (TfLedger *ledger, const char *what, GError **error)
 {
   g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DAMAGED,
-               _ ("the ledger %s: an act is incomplete or names what is not there (%s); run check, or go back to a backup"),
+               _ ("the ledger %s: an act is incomplete or names what is not there (%s); run check, "
+                  "or go back to a backup"),
                ledger->path, what);
   return FALSE;
 }
@@ -121,7 +124,8 @@ body_text (JsonObject *body, const char *key)
   return text != NULL ? text : "";
 }
 
-/* -- person ---------------------------------------------------------------------------------------- */
+/* -- person
+ * ---------------------------------------------------------------------------------------- */
 static gboolean
 project_person (TfLedger *ledger, const TfAct *act, GError **error)
 {
@@ -129,10 +133,12 @@ project_person (TfLedger *ledger, const TfAct *act, GError **error)
   const char *name = tf_json_member_string (act->body, "name");
   if (uid == NULL || name == NULL)
     return damaged (ledger, "person", error);
-  return tf_run (ledger, error, "INSERT OR IGNORE INTO person (uid, name) VALUES (?1, ?2)", "ht", uid, name);
+  return tf_run (ledger, error, "INSERT OR IGNORE INTO person (uid, name) VALUES (?1, ?2)", "ht",
+                 uid, name);
 }
 
-/* -- marks ----------------------------------------------------------------------------------------- */
+/* -- marks
+ * ----------------------------------------------------------------------------------------- */
 static gboolean
 put_region (TfLedger *ledger, JsonObject *body, GError **error)
 {
@@ -140,11 +146,13 @@ put_region (TfLedger *ledger, JsonObject *body, GError **error)
   const char *number = tf_json_member_string (body, "number");
   if (uid == NULL || number == NULL)
     return damaged (ledger, "keep: region", error);
-  return tf_run (ledger, error, "INSERT OR IGNORE INTO region (uid, number) VALUES (?1, ?2)", "ht", uid, number);
+  return tf_run (ledger, error, "INSERT OR IGNORE INTO region (uid, number) VALUES (?1, ?2)", "ht",
+                 uid, number);
 }
 
-#define MARK_SQL                                                                                                               \
-  "INSERT OR IGNORE INTO mark (uid, replica, seq, region, frame, person, origin, hint, follows, outline, measure, label, live)" \
+#define MARK_SQL                                                                                   \
+  "INSERT OR IGNORE INTO mark (uid, replica, seq, region, frame, person, origin, hint, follows, "  \
+  "outline, measure, label, live)"                                                                 \
   " VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8, ?9, ?10, ?11, ?12, 0)"
 
 static gboolean
@@ -153,22 +161,26 @@ put_mark (TfLedger *ledger, const TfAct *act, GError **error)
   JsonObject *body = act->body;
   const char *uid = body_id (body, "mark", TF_ID_HEX);
   JsonObject *outline = tf_json_member_object (body, "outline");
-  gint64 region = region_key (ledger, body), frame = frame_key (ledger, body), person = person_key (ledger, body);
-  gint64 measure = key_of (ledger, "SELECT id FROM measure WHERE cid = ?1", body, "measure", TF_CID_HEX);
-  gint64 follows = key_of (ledger, "SELECT id FROM mark WHERE uid = ?1", body, "follows", TF_ID_HEX);
+  gint64 region = region_key (ledger, body), frame = frame_key (ledger, body),
+         person = person_key (ledger, body);
+  gint64 measure
+      = key_of (ledger, "SELECT id FROM measure WHERE cid = ?1", body, "measure", TF_CID_HEX);
+  gint64 follows
+      = key_of (ledger, "SELECT id FROM mark WHERE uid = ?1", body, "follows", TF_ID_HEX);
   if (uid == NULL || outline == NULL || region == 0 || frame == 0 || person == 0 || measure == 0)
     return damaged (ledger, "keep", error);
   g_autofree char *text = tf_json_node_dup_text (json_object_get_member (body, "outline"), FALSE);
-  return tf_run (ledger, error, MARK_SQL, "hiiiiiikktit", uid, act->replica, act->seq, region, frame, person,
-                 tf_json_member_int (body, "origin", TF_MARK_DRAWN), hint_key (ledger, body), follows, text, measure,
-                 body_text (body, "label"));
+  return tf_run (ledger, error, MARK_SQL, "hiiiiiikktit", uid, act->replica, act->seq, region,
+                 frame, person, tf_json_member_int (body, "origin", TF_MARK_DRAWN),
+                 hint_key (ledger, body), follows, text, measure, body_text (body, "label"));
 }
 
 static gboolean
 refresh_mark_and_hint (TfLedger *ledger, gint64 mark, GError **error)
 {
   gint64 hint = tf_value (ledger, NULL, 0, "SELECT hint FROM mark WHERE id = ?1", "i", mark);
-  return tf_point_refresh_mark (ledger, mark, error) && (hint == 0 || tf_point_refresh_hint (ledger, hint, error));
+  return tf_point_refresh_mark (ledger, mark, error)
+         && (hint == 0 || tf_point_refresh_hint (ledger, hint, error));
 }
 
 /* Which marks the acts of one subject have put in, and whether each is live now. */
@@ -203,10 +215,11 @@ project_marks (TfLedger *ledger, const char *subject, GError **error)
   g_auto (Current) current = { 0 };
   if (!find_current (ledger, subject, &current, error))
     return FALSE;
-  gint64 live = g_strcmp0 (current.kind, "keep") == 0
-                    ? tf_value (ledger, NULL, 0, "SELECT id FROM mark WHERE replica = ?1 AND seq = ?2", "ii", current.replica,
-                                current.seq)
-                    : 0;
+  gint64 live
+      = g_strcmp0 (current.kind, "keep") == 0
+            ? tf_value (ledger, NULL, 0, "SELECT id FROM mark WHERE replica = ?1 AND seq = ?2",
+                        "ii", current.replica, current.seq)
+            : 0;
   g_autoptr (GArray) others = list_marks (ledger, subject, TRUE, error);
   if (others == NULL)
     return FALSE;
@@ -217,7 +230,8 @@ project_marks (TfLedger *ledger, const char *subject, GError **error)
   return live == 0 || set_live (ledger, live, TRUE, error);
 }
 
-/* -- dropped hints, classes, notes ------------------------------------------------------------------ */
+/* -- dropped hints, classes, notes
+ * ------------------------------------------------------------------ */
 static gboolean
 project_dropped (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
 {
@@ -227,27 +241,33 @@ project_dropped (TfLedger *ledger, const char *subject, JsonObject *body, GError
     return damaged (ledger, "drop", error);
   if (!find_current (ledger, subject, &current, error))
     return FALSE;
-  const char *sql = current.body != NULL ? "INSERT OR IGNORE INTO dropped (hint, person) VALUES (?1, ?2)"
-                                         : "DELETE FROM dropped WHERE hint = ?1 AND person = ?2";
-  return tf_run (ledger, error, sql, "ii", hint, person) && tf_point_refresh_hint (ledger, hint, error);
+  const char *sql = current.body != NULL
+                        ? "INSERT OR IGNORE INTO dropped (hint, person) VALUES (?1, ?2)"
+                        : "DELETE FROM dropped WHERE hint = ?1 AND person = ?2";
+  return tf_run (ledger, error, sql, "ii", hint, person)
+         && tf_point_refresh_hint (ledger, hint, error);
 }
 
 static gboolean
 project_class (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
 {
   g_auto (Current) current = { 0 };
-  gint64 region = region_key (ledger, body), frame = frame_key (ledger, body), person = person_key (ledger, body);
+  gint64 region = region_key (ledger, body), frame = frame_key (ledger, body),
+         person = person_key (ledger, body);
   if (region == 0 || frame == 0 || person == 0)
     return damaged (ledger, "class", error);
   if (!find_current (ledger, subject, &current, error)
-      || !tf_run (ledger, error, "DELETE FROM class WHERE region = ?1 AND frame = ?2 AND person = ?3", "iii", region, frame,
-                  person))
+      || !tf_run (ledger, error,
+                  "DELETE FROM class WHERE region = ?1 AND frame = ?2 AND person = ?3", "iii",
+                  region, frame, person))
     return FALSE;
   const char *text = current.body != NULL ? body_text (current.body, "class") : "";
   return *text == '\0'
          || tf_run (ledger, error,
-                    "INSERT INTO class (region, frame, person, class, evidence, clock) VALUES (?1, ?2, ?3, ?4, ?5, ?6)",
-                    "iiitti", region, frame, person, text, body_text (current.body, "evidence"), current.clock);
+                    "INSERT INTO class (region, frame, person, class, evidence, clock) VALUES (?1, "
+                    "?2, ?3, ?4, ?5, ?6)",
+                    "iiitti", region, frame, person, text, body_text (current.body, "evidence"),
+                    current.clock);
 }
 
 static gboolean
@@ -258,16 +278,19 @@ project_note (TfLedger *ledger, const char *subject, JsonObject *body, GError **
   if (region == 0 || person == 0)
     return damaged (ledger, "note", error);
   if (!find_current (ledger, subject, &current, error)
-      || !tf_run (ledger, error, "DELETE FROM note WHERE region = ?1 AND person = ?2", "ii", region, person))
+      || !tf_run (ledger, error, "DELETE FROM note WHERE region = ?1 AND person = ?2", "ii", region,
+                  person))
     return FALSE;
   const char *text = current.body != NULL ? body_text (current.body, "text") : "";
   return *text == '\0'
-         || tf_run (ledger, error, "INSERT INTO note (region, person, text, clock) VALUES (?1, ?2, ?3, ?4)", "iiti", region,
-                    person, text, current.clock);
+         || tf_run (ledger, error,
+                    "INSERT INTO note (region, person, text, clock) VALUES (?1, ?2, ?3, ?4)",
+                    "iiti", region, person, text, current.clock);
 }
 
 static gboolean
-project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body, GError **error)
+project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
+                 GError **error)
 {
   if (strcmp (kind, "keep") == 0 || strcmp (kind, "withdraw") == 0)
     return project_marks (ledger, subject, error);
@@ -278,22 +301,25 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
   return project_note (ledger, subject, body, error);
 }
 
-/* -- undo and redo ---------------------------------------------------------------------------------- */
+/* -- undo and redo
+ * ---------------------------------------------------------------------------------- */
 static gboolean
 project_undo (TfLedger *ledger, const TfAct *act, GError **error)
 {
   gint64 undone = strcmp (act->kind, "undo") == 0;
   gint64 seq = tf_json_member_int (act->body, "act", 0);
-  gint64 replica = key_of (ledger, "SELECT no FROM replica WHERE id = ?1", act->body, "replica", TF_ID_HEX);
-  g_autofree char *kind = tf_text_value (ledger, error, "SELECT kind FROM act WHERE replica = ?1 AND seq = ?2", "ii", replica,
-                                         seq);
-  g_autofree char *text = tf_text_value (ledger, error,
-                                         "SELECT CAST (body AS TEXT) FROM act WHERE replica = ?1 AND seq = ?2", "ii", replica,
-                                         seq);
+  gint64 replica
+      = key_of (ledger, "SELECT no FROM replica WHERE id = ?1", act->body, "replica", TF_ID_HEX);
+  g_autofree char *kind = tf_text_value (
+      ledger, error, "SELECT kind FROM act WHERE replica = ?1 AND seq = ?2", "ii", replica, seq);
+  g_autofree char *text = tf_text_value (
+      ledger, error, "SELECT CAST (body AS TEXT) FROM act WHERE replica = ?1 AND seq = ?2", "ii",
+      replica, seq);
   g_autoptr (JsonNode) root = parse_object (text);
   if (kind == NULL || root == NULL || !tf_act_is_deed (kind))
     return damaged (ledger, act->kind, error);
-  return tf_run (ledger, error, "UPDATE deed SET undone = ?3 WHERE replica = ?1 AND seq = ?2", "iii", replica, seq, undone)
+  return tf_run (ledger, error, "UPDATE deed SET undone = ?3 WHERE replica = ?1 AND seq = ?2",
+                 "iii", replica, seq, undone)
          && project_subject (ledger, kind, act->subject, json_node_get_object (root), error);
 }
 
@@ -305,11 +331,13 @@ put_deed (TfLedger *ledger, const TfAct *act, GError **error)
   if (person == 0)
     return damaged (ledger, act->kind, error);
   if (tf_act_is_deed (act->kind)
-      && !tf_run (ledger, error, "UPDATE deed SET undone = 2 WHERE person = ?1 AND replica = ?2 AND undone = 1", "ii", person,
-                  act->replica))
+      && !tf_run (ledger, error,
+                  "UPDATE deed SET undone = 2 WHERE person = ?1 AND replica = ?2 AND undone = 1",
+                  "ii", person, act->replica))
     return FALSE;
-  return tf_run (ledger, error, "INSERT INTO deed (replica, seq, person, undone) VALUES (?1, ?2, ?3, 0)", "iii", act->replica,
-                 act->seq, person);
+  return tf_run (ledger, error,
+                 "INSERT INTO deed (replica, seq, person, undone) VALUES (?1, ?2, ?3, 0)", "iii",
+                 act->replica, act->seq, person);
 }
 
 gboolean
@@ -328,9 +356,11 @@ tf_project_act (TfLedger *ledger, const TfAct *act, GError **error)
     return FALSE;
   if (!put_deed (ledger, act, error))
     return FALSE;
-  if (strcmp (act->kind, "keep") == 0 && !(put_region (ledger, act->body, error) && put_mark (ledger, act, error)))
+  if (strcmp (act->kind, "keep") == 0
+      && !(put_region (ledger, act->body, error) && put_mark (ledger, act, error)))
     return FALSE;
   if (strcmp (act->kind, "undo") == 0 || strcmp (act->kind, "redo") == 0)
     return project_undo (ledger, act, error);
-  return !tf_act_is_deed (act->kind) || project_subject (ledger, act->kind, act->subject, act->body, error);
+  return !tf_act_is_deed (act->kind)
+         || project_subject (ledger, act->kind, act->subject, act->body, error);
 }

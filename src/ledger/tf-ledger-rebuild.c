@@ -2,9 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Projections made anew. A scratch database holds empty projections; the ledger is attached to it as "src", read-only, so that the
- * names of log and machine rows mean the ledger's and the names of projections the scratch's. The functions that project
- * an act when it is written then do all the work. */
+/* Projections made anew. A scratch database holds empty projections; the ledger is attached to it
+ * as "src", read-only, so that the names of log and machine rows mean the ledger's and the names
+ * of projections the scratch's. The functions that project an act when it is written then do all
+ * the work. */
 
 #include "tf-ledger-check-private.h"
 
@@ -19,7 +20,8 @@ scratch_new (const TfLedger *ledger, GError **error)
   scratch->now_data = ledger->now_data;
   scratch->notices = tf_notes_new ();
   scratch->statements = tf_statements_new ();
-  int rc = sqlite3_open_v2 ("", &scratch->db, SQLITE_OPEN_READWRITE | SQLITE_OPEN_CREATE | SQLITE_OPEN_URI, NULL);
+  int rc = sqlite3_open_v2 ("", &scratch->db,
+                            SQLITE_OPEN_READWRITE | SQLITE_OPEN_CREATE | SQLITE_OPEN_URI, NULL);
   if (rc == SQLITE_OK)
     {
       sqlite3_busy_timeout (scratch->db, ledger->busy_ms);
@@ -33,11 +35,15 @@ scratch_new (const TfLedger *ledger, GError **error)
   return NULL;
 }
 
-/* -- schema ------------------------------------------------------------------------------------------ */
-#define NAMES(schema) "SELECT name, type, sql FROM " schema ".sqlite_schema WHERE name NOT LIKE 'sqlite\\_%' ESCAPE '\\'"
-#define SCHEMA_SQL                                                                                                             \
-  "SELECT DISTINCT name FROM (SELECT * FROM (" NAMES ("main") " EXCEPT " NAMES ("src") ") UNION ALL SELECT * FROM ("           \
-  NAMES ("src") " EXCEPT " NAMES ("main") ")) ORDER BY name"
+/* -- schema
+ * ------------------------------------------------------------------------------------------ */
+#define NAMES(schema)                                                                              \
+  "SELECT name, type, sql FROM " schema                                                            \
+  ".sqlite_schema WHERE name NOT LIKE 'sqlite\\_%' ESCAPE '\\'"
+#define SCHEMA_SQL                                                                                 \
+  "SELECT DISTINCT name FROM (SELECT * FROM (" NAMES ("main") " EXCEPT " NAMES (                   \
+      "src") ") UNION ALL SELECT * FROM (" NAMES ("src") " EXCEPT " NAMES ("main") ")) ORDER BY "  \
+                                                                                   "name"
 
 static gboolean
 make_schema (TfLedger *scratch, GError **error)
@@ -64,7 +70,8 @@ tf_check_schema (TfLedger *ledger, TfNotes *findings, GError **error)
   return more == 0;
 }
 
-/* -- projections -------------------------------------------------------------------------------------- */
+/* -- projections
+ * -------------------------------------------------------------------------------------- */
 static gboolean
 replay_act (TfLedger *scratch, sqlite3_stmt *query, TfNotes *findings, GError **error)
 {
@@ -98,11 +105,11 @@ replay_act (TfLedger *scratch, sqlite3_stmt *query, TfNotes *findings, GError **
 static gboolean
 replay (TfLedger *scratch, TfNotes *findings, GError **error)
 {
-  g_autoptr (sqlite3_stmt) query
-      = tf_query (scratch, error,
-                  "SELECT a.replica, r.id, a.seq, a.clock, a.kind, a.subject, CAST (a.body AS TEXT) FROM act a"
-                  " JOIN replica r ON r.no = a.replica ORDER BY a.clock, r.id, a.seq",
-                  "");
+  g_autoptr (sqlite3_stmt) query = tf_query (
+      scratch, error,
+      "SELECT a.replica, r.id, a.seq, a.clock, a.kind, a.subject, CAST (a.body AS TEXT) FROM act a"
+      " JOIN replica r ON r.no = a.replica ORDER BY a.clock, r.id, a.seq",
+      "");
   int more = -1;
   while (query != NULL && (more = tf_query_step (scratch, query, error)) > 0)
     if (!replay_act (scratch, query, findings, error))
@@ -120,40 +127,46 @@ static const char *const compared[][2] = {
   { "person", "SELECT uid, name FROM @.person" },
   { "deed", "SELECT replica, seq, undone, " PERSON " FROM @.deed t" },
   { "region", "SELECT uid, number FROM @.region" },
-  { "mark", "SELECT uid, replica, seq, frame, origin, hint, outline, measure, label, live, " PERSON ", " REGION
-            ", (SELECT x.uid FROM @.mark x WHERE x.id = t.follows) FROM @.mark t" },
+  { "mark", "SELECT uid, replica, seq, frame, origin, hint, outline, measure, label, live, " PERSON
+            ", " REGION ", (SELECT x.uid FROM @.mark x WHERE x.id = t.follows) FROM @.mark t" },
   { "dropped", "SELECT hint, " PERSON " FROM @.dropped t" },
   { "class", "SELECT frame, class, evidence, clock, " PERSON ", " REGION " FROM @.class t" },
   { "note", "SELECT text, clock, " PERSON ", " REGION " FROM @.note t" },
-  { "point", "SELECT hint, CASE hint WHEN 1 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id = t.mark) END, frame, "
-             "CASE hint WHEN 1 THEN region ELSE " REGION " END, time, year, lat_deg, flux_mx, tilt_deg, mu, cmd_deg,"
-             " separation_deg, imbalance, leading, leading_sure, unipolar, straddles, witnesses_differ FROM @.point t" },
+  { "point", "SELECT hint, CASE hint WHEN 1 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id "
+             "= t.mark) END, frame, "
+             "CASE hint WHEN 1 THEN region ELSE " REGION
+             " END, time, year, lat_deg, flux_mx, tilt_deg, mu, cmd_deg,"
+             " separation_deg, imbalance, leading, leading_sure, unipolar, straddles, "
+             "witnesses_differ FROM @.point t" },
 };
 
 static gboolean
-compare_table (TfLedger *scratch, const char *table, const char *rows, TfNotes *findings, GError **error)
+compare_table (TfLedger *scratch, const char *table, const char *rows, TfNotes *findings,
+               GError **error)
 {
   g_auto (GStrv) parts = g_strsplit (rows, "@", -1);
   g_autofree char *made = g_strjoinv ("main", parts);
   g_autofree char *kept = g_strjoinv ("src", parts);
-  g_autofree char *sql = g_strdup_printf ("SELECT (SELECT count (*) FROM (%s EXCEPT %s)), (SELECT count (*) FROM (%s EXCEPT %s)),"
-                                          " (SELECT count (*) FROM main.%s), (SELECT count (*) FROM src.%s)",
-                                          made, kept, kept, made, table, table);
+  g_autofree char *sql = g_strdup_printf (
+      "SELECT (SELECT count (*) FROM (%s EXCEPT %s)), (SELECT count (*) FROM (%s EXCEPT %s)),"
+      " (SELECT count (*) FROM main.%s), (SELECT count (*) FROM src.%s)",
+      made, kept, kept, made, table, table);
   g_autoptr (sqlite3_stmt) query = tf_query (scratch, error, sql, "");
   if (query == NULL || tf_query_step (scratch, query, error) <= 0)
     return FALSE;
   int missing = sqlite3_column_int (query, 0), strange = sqlite3_column_int (query, 1);
-  if (missing > 0 || strange > 0 || sqlite3_column_int64 (query, 2) != sqlite3_column_int64 (query, 3))
-    tf_notes_add (findings, strcmp (table, "point") == 0 ? "check-points" : "check-projection", "ssii", scratch->path, table,
-                  missing, strange);
+  if (missing > 0 || strange > 0
+      || sqlite3_column_int64 (query, 2) != sqlite3_column_int64 (query, 3))
+    tf_notes_add (findings, strcmp (table, "point") == 0 ? "check-points" : "check-projection",
+                  "ssii", scratch->path, table, missing, strange);
   return TRUE;
 }
 
 static gboolean
 rebuild (TfLedger *scratch, TfNotes *findings, GError **error)
 {
-  if (!tf_run_script (scratch, tf_ledger_projection_sql, error) || !tf_run_script (scratch, "BEGIN", error)
-      || !replay (scratch, findings, error))
+  if (!tf_run_script (scratch, tf_ledger_projection_sql, error)
+      || !tf_run_script (scratch, "BEGIN", error) || !replay (scratch, findings, error))
     return FALSE;
   for (guint k = 0; k < G_N_ELEMENTS (compared); k++)
     if (!compare_table (scratch, compared[k][0], compared[k][1], findings, error))

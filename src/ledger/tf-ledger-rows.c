@@ -10,29 +10,39 @@
 #include <glib/gi18n-lib.h>
 
 /* Columns 0 to 20; the measure's follow. Marks and hints give the same ones. */
-#define COMMON                                                                                                                 \
-  " f.path, f.checksum, t.text, e.program, f.instrument, f.vantage, f.kind, f.time_source, f.simulated, "
+#define COMMON                                                                                     \
+  " f.path, f.checksum, t.text, e.program, f.instrument, f.vantage, f.kind, f.time_source, "       \
+  "f.simulated, "
 
 /* One's own note or class, else the newest of anybody's. */
-#define MARK_COLUMNS                                                                                                           \
-  "m.id, 0, lower (hex (m.uid)), m.frame, m.region, g.number, m.origin, m.label,"                                              \
-  " coalesce ((SELECT n.text FROM note n WHERE n.region = m.region AND n.person = m.person),"                                  \
-  " (SELECT n.text FROM note n WHERE n.region = m.region ORDER BY n.clock DESC LIMIT 1), ''),"                                 \
-  " coalesce ((SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame AND c.person = m.person),"          \
-  " (SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame ORDER BY c.clock DESC LIMIT 1), ''),"         \
+#define MARK_COLUMNS                                                                               \
+  "m.id, 0, lower (hex (m.uid)), m.frame, m.region, g.number, m.origin, m.label,"                  \
+  " coalesce ((SELECT n.text FROM note n WHERE n.region = m.region AND n.person = m.person),"      \
+  " (SELECT n.text FROM note n WHERE n.region = m.region ORDER BY n.clock DESC LIMIT 1), ''),"     \
+  " coalesce ((SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame AND "   \
+  "c.person = m.person),"                                                                          \
+  " (SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame ORDER BY "        \
+  "c.clock DESC LIMIT 1), ''),"                                                                    \
   " p.name, e.leading = 0, m.outline," COMMON
 
-#define MARK_FROM                                                                                                              \
-  " FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person JOIN measure e ON e.id = m.measure"          \
+#define MARK_FROM                                                                                  \
+  " FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person JOIN measure e " \
+  "ON e.id = m.measure"                                                                            \
   " JOIN frame f ON f.id = m.frame JOIN method t ON t.id = e.method"
 
-#define HINT_COLUMNS                                                                                                           \
-  "h.id, 1, lower (hex (h.cid)), h.frame, 0, '', -1, '', '', '', '', h.unipolar, h.outline," COMMON
+#define HINT_COLUMNS                                                                               \
+  "h.id, 1, lower (hex (h.cid)), h.frame, 0, '', -1, '', '', '', '', h.unipolar, "                 \
+  "h.outline," COMMON
 
-#define HINT_FROM                                                                                                              \
-  " FROM hint h JOIN measure e ON e.id = h.measure JOIN frame f ON f.id = h.frame JOIN method t ON t.id = e.method"
+#define HINT_FROM                                                                                  \
+  " FROM hint h JOIN measure e ON e.id = h.measure JOIN frame f ON f.id = h.frame JOIN method t "  \
+  "ON t.id = e.method"
 
-enum { FIRST_COMMON = 13, FIRST_MEASURED = 22 };
+enum
+{
+  FIRST_COMMON = 13,
+  FIRST_MEASURED = 22
+};
 
 static const char *
 origin_name (int origin)
@@ -54,8 +64,9 @@ read_outline (TfLedger *ledger, const char *text, GError **error)
   TfOutline *outline = tf_outline_from_text (text, &problem);
   if (outline != NULL)
     return outline;
-  g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DAMAGED, _ ("the ledger %s: an outline cannot be read: %s; run check"),
-               ledger->path, problem->message);
+  g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DAMAGED,
+               _ ("the ledger %s: an outline cannot be read: %s; run check"), ledger->path,
+               problem->message);
   g_error_free (problem);
   return NULL;
 }
@@ -95,9 +106,10 @@ tf_row_free (TfRow *row)
 {
   if (row == NULL)
     return;
-  char *texts[] = { row->mark_id, row->region, row->passage, row->label, row->note, row->mw_class, row->frame_path,
-                    row->frame_checksum, row->method, row->program_version, row->person, row->instrument, row->vantage,
-                    row->time_source };
+  char *texts[] = { row->mark_id, row->region,          row->passage,    row->label,
+                    row->note,    row->mw_class,        row->frame_path, row->frame_checksum,
+                    row->method,  row->program_version, row->person,     row->instrument,
+                    row->vantage, row->time_source };
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     g_free (texts[k]);
   g_clear_pointer (&row->outline, tf_outline_unref);
@@ -107,7 +119,8 @@ tf_row_free (TfRow *row)
 
 /* @where is appended; ?1 is @key. */
 static gboolean
-read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, gboolean outlines, GPtrArray *rows, GError **error)
+read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, gboolean outlines,
+           GPtrArray *rows, GError **error)
 {
   g_autofree char *measured = tf_measure_dup_columns ("e.");
   g_autofree char *sql = g_strconcat ("SELECT ", hints ? HINT_COLUMNS : MARK_COLUMNS, measured,
@@ -118,7 +131,8 @@ read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, gboo
     {
       TfRow *row = read_row (query);
       g_ptr_array_add (rows, row);
-      if (outlines && (row->outline = read_outline (ledger, tf_column_text (query, 12), error)) == NULL)
+      if (outlines
+          && (row->outline = read_outline (ledger, tf_column_text (query, 12), error)) == NULL)
         return FALSE;
     }
   return more == 0;
@@ -141,10 +155,14 @@ compare_rows (gconstpointer a, gconstpointer b)
   return (p->mark > q->mark) - (p->mark < q->mark);
 }
 
-#define OPEN_HINTS " WHERE (?1 = 0 OR h.frame = ?1) AND EXISTS (SELECT 1 FROM point q WHERE q.hint = 1 AND q.mark = h.id)"
-#define JUDGED_HINTS                                                                                                           \
-  " WHERE (?1 = 0 OR h.frame = ?1) AND (EXISTS (SELECT 1 FROM point q WHERE q.hint = 1 AND q.mark = h.id)"                     \
-  " OR EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id) OR EXISTS (SELECT 1 FROM mark m WHERE m.hint = h.id AND m.live))"
+#define OPEN_HINTS                                                                                 \
+  " WHERE (?1 = 0 OR h.frame = ?1) AND EXISTS (SELECT 1 FROM point q WHERE q.hint = 1 AND q.mark " \
+  "= h.id)"
+#define JUDGED_HINTS                                                                               \
+  " WHERE (?1 = 0 OR h.frame = ?1) AND (EXISTS (SELECT 1 FROM point q WHERE q.hint = 1 AND "       \
+  "q.mark = h.id)"                                                                                 \
+  " OR EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id) OR EXISTS (SELECT 1 FROM mark m "      \
+  "WHERE m.hint = h.id AND m.live))"
 
 GPtrArray *
 tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error)
@@ -152,10 +170,12 @@ tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error)
   g_return_val_if_fail (ledger != NULL && query != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
   if (query->marks
-      && !read_rows (ledger, FALSE, " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)", query->frame, !query->no_outlines, rows, error))
+      && !read_rows (ledger, FALSE, " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)", query->frame,
+                     !query->no_outlines, rows, error))
     return NULL;
   if (query->hints
-      && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame, !query->no_outlines, rows, error))
+      && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame,
+                     !query->no_outlines, rows, error))
     return NULL;
   g_ptr_array_sort (rows, compare_rows);
   return g_steal_pointer (&rows);
@@ -166,12 +186,13 @@ tf_ledger_row (TfLedger *ledger, gint64 mark, gboolean is_hint, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
-  if (!read_rows (ledger, is_hint, is_hint ? " WHERE h.id = ?1" : " WHERE m.id = ?1", mark, TRUE, rows, error))
+  if (!read_rows (ledger, is_hint, is_hint ? " WHERE h.id = ?1" : " WHERE m.id = ?1", mark, TRUE,
+                  rows, error))
     return NULL;
   if (rows->len == 0)
     {
-      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("the ledger %s has no mark or hint %" G_GINT64_FORMAT),
-                   ledger->path, mark);
+      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE,
+                   _ ("the ledger %s has no mark or hint %" G_GINT64_FORMAT), ledger->path, mark);
       return NULL;
     }
   g_ptr_array_set_free_func (rows, NULL);

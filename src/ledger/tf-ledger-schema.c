@@ -61,145 +61,183 @@
 
 #include "tf-ledger-private.h"
 
-#include <errno.h>
-#include <string.h>
-#include <sys/stat.h>
-#include <sys/statvfs.h>
-#include <glib/gi18n-lib.h>
+#define LOG_SQL                                                                                    \
+  "CREATE TABLE setting (key TEXT PRIMARY KEY, value TEXT NOT NULL) STRICT, WITHOUT ROWID;"        \
+  "CREATE TABLE replica (no INTEGER PRIMARY KEY, "                                                 \
+  "id BLOB NOT NULL UNIQUE CHECK (length (id) = 16), letter TEXT NOT NULL, "                       \
+  "born INTEGER NOT NULL) STRICT;"                                                                 \
+  "CREATE TABLE act (replica INTEGER NOT NULL REFERENCES replica (no), "                           \
+  "seq INTEGER NOT NULL CHECK (seq > 0), clock INTEGER NOT NULL, wall INTEGER NOT NULL, "          \
+  "kind TEXT NOT NULL, subject BLOB NOT NULL, body BLOB NOT NULL, before BLOB NOT NULL, "          \
+  "hash BLOB NOT NULL, PRIMARY KEY (replica, seq)) STRICT;"                                        \
+  "CREATE INDEX act_subject ON act (subject, clock);"                                              \
+  "CREATE INDEX act_clock ON act (clock);"                                                         \
+  "CREATE TABLE after (replica INTEGER NOT NULL, seq INTEGER NOT NULL, "                           \
+  "p_replica INTEGER NOT NULL, p_seq INTEGER NOT NULL, PRIMARY KEY (replica, seq, p_replica, "     \
+  "p_seq), FOREIGN KEY (replica, seq) REFERENCES act (replica, seq), FOREIGN KEY (p_replica, "     \
+  "p_seq) REFERENCES act (replica, seq)) STRICT, WITHOUT ROWID;"                                   \
+  "CREATE INDEX after_p ON after (p_replica, p_seq);"                                              \
+  "CREATE TABLE have (replica INTEGER PRIMARY KEY REFERENCES replica (no), "                       \
+  "upto INTEGER NOT NULL) STRICT;"
 
-#define LOG_SQL                                                                                                                \
-  "CREATE TABLE setting (key TEXT PRIMARY KEY, value TEXT NOT NULL) STRICT, WITHOUT ROWID;"                                    \
-  "CREATE TABLE replica (no INTEGER PRIMARY KEY, id BLOB NOT NULL UNIQUE CHECK (length (id) = 16),"                            \
-  " letter TEXT NOT NULL, born INTEGER NOT NULL) STRICT;"                                                                      \
-  "CREATE TABLE act (replica INTEGER NOT NULL REFERENCES replica (no), seq INTEGER NOT NULL CHECK (seq > 0),"                  \
-  " clock INTEGER NOT NULL, wall INTEGER NOT NULL, kind TEXT NOT NULL, subject BLOB NOT NULL, body BLOB NOT NULL,"             \
-  " before BLOB NOT NULL, hash BLOB NOT NULL, PRIMARY KEY (replica, seq)) STRICT;"                                             \
-  "CREATE INDEX act_subject ON act (subject, clock);"                                                                          \
-  "CREATE INDEX act_clock ON act (clock);"                                                                                     \
-  "CREATE TABLE after (replica INTEGER NOT NULL, seq INTEGER NOT NULL, p_replica INTEGER NOT NULL, p_seq INTEGER NOT NULL,"    \
-  " PRIMARY KEY (replica, seq, p_replica, p_seq), FOREIGN KEY (replica, seq) REFERENCES act (replica, seq),"                   \
-  " FOREIGN KEY (p_replica, p_seq) REFERENCES act (replica, seq)) STRICT, WITHOUT ROWID;"                                      \
-  "CREATE INDEX after_p ON after (p_replica, p_seq);"                                                                          \
-  "CREATE TABLE have (replica INTEGER PRIMARY KEY REFERENCES replica (no), upto INTEGER NOT NULL) STRICT;"
+#define POLE_SQL(p)                                                                                \
+  p "_flux_mx REAL, " p "_flux_sigma_mx REAL, " p "_flux_noise_mx REAL, " p "_lon_deg REAL, "      \
+  p "_carrington_lon_deg REAL, " p "_lat_deg REAL, " p "_place_sigma_deg REAL, " p                 \
+  "_place_noise_deg REAL, " p "_rms_radius_deg REAL, " p "_pixels INTEGER, " p                     \
+  "_area_msh REAL, " p "_pinned INTEGER,"
 
-#define POLE_SQL(p)                                                                                                            \
-  p "_flux_mx REAL, " p "_flux_sigma_mx REAL, " p "_flux_noise_mx REAL, " p "_lon_deg REAL, " p "_carrington_lon_deg REAL, " p \
-    "_lat_deg REAL, " p "_place_sigma_deg REAL, " p "_place_noise_deg REAL, " p "_rms_radius_deg REAL, " p                     \
-    "_pixels INTEGER, " p "_area_msh REAL, " p "_pinned INTEGER,"
-
-#define MACHINE_SQL                                                                                                            \
-  "CREATE TABLE method (id INTEGER PRIMARY KEY, text TEXT NOT NULL UNIQUE) STRICT;"                                            \
-  "CREATE TABLE frame (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, checksum TEXT NOT NULL, hdu INTEGER NOT NULL,"        \
-  " plane INTEGER NOT NULL, kind TEXT NOT NULL, role TEXT NOT NULL, time REAL, time_text TEXT, time_source TEXT NOT NULL,"     \
-  " instrument TEXT NOT NULL, vantage TEXT NOT NULL, simulated INTEGER NOT NULL, noise_gauss REAL, refusal TEXT,"              \
-  " info TEXT NOT NULL, path TEXT NOT NULL, digest BLOB) STRICT;"                                                              \
-  "CREATE INDEX frame_time ON frame (time);"                                                                                   \
-  "CREATE INDEX frame_checksum ON frame (checksum);"                                                                           \
-  "CREATE TABLE place (path TEXT NOT NULL, frame INTEGER NOT NULL REFERENCES frame (id), size INTEGER NOT NULL,"               \
-  " mtime INTEGER NOT NULL, PRIMARY KEY (path, frame)) STRICT, WITHOUT ROWID;"                                                 \
-  "CREATE TABLE run (id INTEGER PRIMARY KEY, frame INTEGER NOT NULL REFERENCES frame (id),"                                    \
-  " rule INTEGER NOT NULL REFERENCES method (id), method INTEGER NOT NULL REFERENCES method (id),"                             \
-  " n INTEGER NOT NULL, UNIQUE (frame, rule)) STRICT;"                                                                         \
-  "CREATE TABLE measure (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, frame INTEGER NOT NULL REFERENCES frame (id),"      \
-  " method INTEGER NOT NULL REFERENCES method (id), program TEXT NOT NULL, time REAL, time_text TEXT, year REAL,"              \
-  " field_used INTEGER NOT NULL, floor_kind INTEGER NOT NULL, floor_gauss REAL, noise_gauss REAL, noise_flux_mx REAL,"         \
-  " scale REAL, " POLE_SQL ("positive") POLE_SQL ("negative")                                                                  \
-  " leading INTEGER NOT NULL, leading_sure INTEGER NOT NULL, witness_a INTEGER, witness_b INTEGER, witness_c INTEGER,"         \
-  " lat_deg REAL, carrington_lon_deg REAL, stonyhurst_lon_deg REAL, cmd_deg REAL, mu REAL, axis_bearing_deg REAL,"             \
-  " axis_tilt_deg REAL, tilt_noise_deg REAL, tilt_outline_deg REAL, tilt_floor_deg REAL, tilt_sigma_deg REAL,"                 \
-  " separation_deg REAL, separation_sigma_deg REAL, separation_noise_deg REAL, separation_mm REAL, compactness REAL,"          \
-  " pieces INTEGER, flux_unsigned_mx REAL, imbalance REAL, ephemeral INTEGER NOT NULL, axial_dipole_gauss REAL,"               \
-  " axial_dipole_sigma_gauss REAL, axial_dipole_poles_gauss REAL, notes TEXT NOT NULL, cautions TEXT NOT NULL,"                \
-  " digest BLOB) STRICT;"                                                                                                      \
-  "CREATE INDEX measure_frame ON measure (frame);"                                                                             \
-  "CREATE TABLE hint (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, frame INTEGER NOT NULL REFERENCES frame (id),"         \
-  " rule INTEGER NOT NULL REFERENCES method (id), ordinal INTEGER NOT NULL, unipolar INTEGER NOT NULL, outline TEXT NOT NULL," \
-  " measure INTEGER NOT NULL REFERENCES measure (id), notes TEXT NOT NULL, digest BLOB) STRICT;"                               \
+#define MACHINE_SQL                                                                                \
+  "CREATE TABLE method (id INTEGER PRIMARY KEY, text TEXT NOT NULL UNIQUE) STRICT;"                \
+  "CREATE TABLE frame (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, "                         \
+  "checksum TEXT NOT NULL, hdu INTEGER NOT NULL, plane INTEGER NOT NULL, kind TEXT NOT NULL, "     \
+  "role TEXT NOT NULL, time REAL, time_text TEXT, time_source TEXT NOT NULL, "                     \
+  "instrument TEXT NOT NULL, vantage TEXT NOT NULL, simulated INTEGER NOT NULL, "                  \
+  "noise_gauss REAL, refusal TEXT, info TEXT NOT NULL, path TEXT NOT NULL, "                       \
+  "digest BLOB) STRICT;"                                                                           \
+  "CREATE INDEX frame_time ON frame (time);"                                                       \
+  "CREATE INDEX frame_checksum ON frame (checksum);"                                               \
+  "CREATE TABLE place (path TEXT NOT NULL, frame INTEGER NOT NULL REFERENCES frame (id), "         \
+  "size INTEGER NOT NULL, mtime INTEGER NOT NULL, PRIMARY KEY (path, frame)) STRICT, "             \
+  "WITHOUT ROWID;"                                                                                 \
+  "CREATE TABLE run (id INTEGER PRIMARY KEY, frame INTEGER NOT NULL REFERENCES frame (id), "       \
+  "rule INTEGER NOT NULL REFERENCES method (id), "                                                 \
+  "method INTEGER NOT NULL REFERENCES method (id), n INTEGER NOT NULL, UNIQUE (frame, "            \
+  "rule)) STRICT;"                                                                                 \
+  "CREATE TABLE measure (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, "                       \
+  "frame INTEGER NOT NULL REFERENCES frame (id), "                                                 \
+  "method INTEGER NOT NULL REFERENCES method (id), program TEXT NOT NULL, time REAL, "             \
+  "time_text TEXT, year REAL, field_used INTEGER NOT NULL, floor_kind INTEGER NOT NULL, "          \
+  "floor_gauss REAL, noise_gauss REAL, noise_flux_mx REAL, scale REAL, " POLE_SQL ("positive")     \
+  POLE_SQL ("negative") " leading INTEGER NOT NULL, leading_sure INTEGER NOT NULL, "               \
+  "witness_a INTEGER, witness_b INTEGER, witness_c INTEGER, lat_deg REAL, "                        \
+  "carrington_lon_deg REAL, stonyhurst_lon_deg REAL, cmd_deg REAL, mu REAL, "                      \
+  "axis_bearing_deg REAL, axis_tilt_deg REAL, tilt_noise_deg REAL, tilt_outline_deg REAL, "        \
+  "tilt_floor_deg REAL, tilt_sigma_deg REAL, separation_deg REAL, separation_sigma_deg REAL, "     \
+  "separation_noise_deg REAL, separation_mm REAL, compactness REAL, pieces INTEGER, "              \
+  "flux_unsigned_mx REAL, imbalance REAL, ephemeral INTEGER NOT NULL, "                            \
+  "axial_dipole_gauss REAL, axial_dipole_sigma_gauss REAL, axial_dipole_poles_gauss REAL, "        \
+  "notes TEXT NOT NULL, cautions TEXT NOT NULL, digest BLOB) STRICT;"                              \
+  "CREATE INDEX measure_frame ON measure (frame);"                                                 \
+  "CREATE TABLE hint (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, "                          \
+  "frame INTEGER NOT NULL REFERENCES frame (id), "                                                 \
+  "rule INTEGER NOT NULL REFERENCES method (id), ordinal INTEGER NOT NULL, "                       \
+  "unipolar INTEGER NOT NULL, outline TEXT NOT NULL, "                                             \
+  "measure INTEGER NOT NULL REFERENCES measure (id), notes TEXT NOT NULL, "                        \
+  "digest BLOB) STRICT;"                                                                           \
   "CREATE INDEX hint_frame ON hint (frame);"
 
+/* deed.undone: 0 stands; 1 undone; 2 undone for good, because a new deed came. */
 const char tf_ledger_projection_sql[] =
-    "CREATE TABLE person (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, name TEXT NOT NULL) STRICT;"
-    "CREATE TABLE deed (replica INTEGER NOT NULL, seq INTEGER NOT NULL, person INTEGER NOT NULL REFERENCES person (id),"
-    " undone INTEGER NOT NULL, PRIMARY KEY (replica, seq)) STRICT, WITHOUT ROWID;" /* 0 stands; 1 undone; 2 undone for good */
+    "CREATE TABLE person (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, "
+    "name TEXT NOT NULL) STRICT;"
+    "CREATE TABLE deed (replica INTEGER NOT NULL, seq INTEGER NOT NULL, "
+    "person INTEGER NOT NULL REFERENCES person (id), undone INTEGER NOT NULL, "
+    "PRIMARY KEY (replica, seq)) STRICT, WITHOUT ROWID;"
     "CREATE INDEX deed_person ON deed (person, replica, undone, seq);"
-    "CREATE TABLE region (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, number TEXT NOT NULL) STRICT;"
-    "CREATE INDEX region_number ON region (substr (number, 1, 6), CAST (substr (number, 7) AS INTEGER));"
-    "CREATE TABLE mark (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, replica INTEGER NOT NULL, seq INTEGER NOT NULL,"
-    " region INTEGER NOT NULL REFERENCES region (id), frame INTEGER NOT NULL REFERENCES frame (id),"
-    " person INTEGER NOT NULL REFERENCES person (id), origin INTEGER NOT NULL, hint INTEGER REFERENCES hint (id),"
-    " follows INTEGER REFERENCES mark (id), outline TEXT NOT NULL, measure INTEGER NOT NULL REFERENCES measure (id),"
-    " label TEXT NOT NULL, live INTEGER NOT NULL, UNIQUE (replica, seq)) STRICT;"
+    "CREATE TABLE region (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, "
+    "number TEXT NOT NULL) STRICT;"
+    "CREATE INDEX region_number ON region (substr (number, 1, 6), CAST (substr (number, "
+    "7) AS INTEGER));"
+    "CREATE TABLE mark (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, "
+    "replica INTEGER NOT NULL, seq INTEGER NOT NULL, "
+    "region INTEGER NOT NULL REFERENCES region (id), "
+    "frame INTEGER NOT NULL REFERENCES frame (id), "
+    "person INTEGER NOT NULL REFERENCES person (id), origin INTEGER NOT NULL, "
+    "hint INTEGER REFERENCES hint (id), follows INTEGER REFERENCES mark (id), "
+    "outline TEXT NOT NULL, measure INTEGER NOT NULL REFERENCES measure (id), "
+    "label TEXT NOT NULL, live INTEGER NOT NULL, UNIQUE (replica, seq)) STRICT;"
     "CREATE INDEX mark_frame ON mark (frame, live);"
     "CREATE INDEX mark_region ON mark (region, live);"
     "CREATE INDEX mark_hint ON mark (hint, live) WHERE hint IS NOT NULL;"
-    "CREATE TABLE dropped (hint INTEGER NOT NULL REFERENCES hint (id), person INTEGER NOT NULL REFERENCES person (id),"
-    " PRIMARY KEY (hint, person)) STRICT, WITHOUT ROWID;"
-    "CREATE TABLE class (region INTEGER NOT NULL REFERENCES region (id), frame INTEGER NOT NULL REFERENCES frame (id),"
-    " person INTEGER NOT NULL REFERENCES person (id), class TEXT NOT NULL, evidence TEXT NOT NULL, clock INTEGER NOT NULL,"
-    " PRIMARY KEY (region, frame, person)) STRICT, WITHOUT ROWID;"
-    "CREATE TABLE note (region INTEGER NOT NULL REFERENCES region (id), person INTEGER NOT NULL REFERENCES person (id),"
-    " text TEXT NOT NULL, clock INTEGER NOT NULL, PRIMARY KEY (region, person)) STRICT, WITHOUT ROWID;"
-    "CREATE TABLE point (hint INTEGER NOT NULL, mark INTEGER NOT NULL, frame INTEGER NOT NULL, region INTEGER NOT NULL,"
-    " time REAL, year REAL, lat_deg REAL, flux_mx REAL, tilt_deg REAL, mu REAL, cmd_deg REAL, separation_deg REAL,"
-    " imbalance REAL, leading INTEGER NOT NULL, leading_sure INTEGER NOT NULL, unipolar INTEGER NOT NULL,"
-    " straddles INTEGER NOT NULL, witnesses_differ INTEGER NOT NULL, PRIMARY KEY (hint, mark)) STRICT, WITHOUT ROWID;"
+    "CREATE TABLE dropped (hint INTEGER NOT NULL REFERENCES hint (id), "
+    "person INTEGER NOT NULL REFERENCES person (id), PRIMARY KEY (hint, person)) STRICT, "
+    "WITHOUT ROWID;"
+    "CREATE TABLE class (region INTEGER NOT NULL REFERENCES region (id), "
+    "frame INTEGER NOT NULL REFERENCES frame (id), "
+    "person INTEGER NOT NULL REFERENCES person (id), class TEXT NOT NULL, "
+    "evidence TEXT NOT NULL, clock INTEGER NOT NULL, PRIMARY KEY (region, frame, "
+    "person)) STRICT, WITHOUT ROWID;"
+    "CREATE TABLE note (region INTEGER NOT NULL REFERENCES region (id), "
+    "person INTEGER NOT NULL REFERENCES person (id), text TEXT NOT NULL, "
+    "clock INTEGER NOT NULL, PRIMARY KEY (region, person)) STRICT, WITHOUT ROWID;"
+    "CREATE TABLE point (hint INTEGER NOT NULL, mark INTEGER NOT NULL, "
+    "frame INTEGER NOT NULL, region INTEGER NOT NULL, time REAL, year REAL, lat_deg REAL, "
+    "flux_mx REAL, tilt_deg REAL, mu REAL, cmd_deg REAL, separation_deg REAL, "
+    "imbalance REAL, leading INTEGER NOT NULL, leading_sure INTEGER NOT NULL, "
+    "unipolar INTEGER NOT NULL, straddles INTEGER NOT NULL, "
+    "witnesses_differ INTEGER NOT NULL, PRIMARY KEY (hint, mark)) STRICT, WITHOUT ROWID;"
     "CREATE INDEX point_frame ON point (frame, hint);";
 
-#define LOCAL_SQL                                                                                                              \
-  "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), person INTEGER NOT NULL REFERENCES person (id),"          \
-  " text TEXT NOT NULL, saved INTEGER NOT NULL, PRIMARY KEY (frame, person)) STRICT, WITHOUT ROWID;"
+#define LOCAL_SQL                                                                                  \
+  "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
+  "person INTEGER NOT NULL REFERENCES person (id), text TEXT NOT NULL, "                           \
+  "saved INTEGER NOT NULL, PRIMARY KEY (frame, person)) STRICT, WITHOUT ROWID;"
 
 /* A pole's column by which of the two leads: +1 the leading, -1 the following. */
-#define BY_POLE(side, column)                                                                                                  \
-  "CASE e.leading * " side " WHEN 1 THEN e.positive_" column " WHEN -1 THEN e.negative_" column " END"
+#define BY_POLE(side, column)                                                                      \
+  "CASE e.leading * " side " WHEN 1 THEN e.positive_" column " WHEN -1 THEN e.negative_"           \
+  column " END"
 
-#define FLAT_SQL                                                                                                               \
-  " f.path AS frame, f.checksum AS frame_checksum, t.text AS method, e.program AS program_version,"                            \
-  " CASE e.field_used WHEN 0 THEN 'radial' WHEN 1 THEN 'as observed' ELSE 'potential' END AS field_used,"                      \
-  " CASE e.ephemeral WHEN 1 THEN 'ephemeral' ELSE 'region' END AS size, e.time_text AS time, f.time_source AS time_source,"    \
-  " f.kind AS kind, f.instrument AS instrument, e.scale AS scale, "
+#define FLAT_SQL                                                                                   \
+  " f.path AS frame, f.checksum AS frame_checksum, t.text AS method, "                             \
+  "e.program AS program_version, "                                                                 \
+  "CASE e.field_used WHEN 0 THEN 'radial' WHEN 1 THEN 'as observed' ELSE 'potential' END AS field_used, " \
+  "CASE e.ephemeral WHEN 1 THEN 'ephemeral' ELSE 'region' END AS size, e.time_text AS time, "      \
+  "f.time_source AS time_source, f.kind AS kind, f.instrument AS instrument, "                     \
+  "e.scale AS scale, "
 
-#define FLAT_SQL_2                                                                                                             \
-  " f.vantage AS vantage, " BY_POLE ("1", "lat_deg") " AS leading_lat_deg, " BY_POLE ("1", "carrington_lon_deg")               \
-  " AS leading_carrington_lon_deg, " BY_POLE ("-1", "lat_deg") " AS following_lat_deg, " BY_POLE ("-1", "carrington_lon_deg")  \
-  " AS following_carrington_lon_deg, e.lat_deg AS lat_deg, e.cmd_deg AS cmd_deg, e.stonyhurst_lon_deg AS stonyhurst_lon_deg,"  \
-  " e.carrington_lon_deg AS carrington_lon_deg, e.mu AS mu, e.axis_bearing_deg AS axis_bearing_deg,"                           \
-  " e.axis_tilt_deg AS axis_tilt_deg, e.tilt_sigma_deg AS tilt_sigma_deg, e.separation_deg AS separation_deg,"                 \
-  " e.separation_sigma_deg AS separation_sigma_deg, e.separation_mm AS separation_mm, e.compactness AS compactness,"           \
-  " e.pieces AS pieces, e.leading AS leading_polarity, e.leading_sure AS leading_sure,"                                        \
-  " e.flux_unsigned_mx AS flux_unsigned_mx, e.positive_flux_mx AS flux_positive_mx, e.negative_flux_mx AS flux_negative_mx,"   \
-  " e.imbalance AS imbalance, e.positive_area_msh + e.negative_area_msh AS magnetic_area_msh, "
+#define FLAT_SQL_2                                                                                 \
+  " f.vantage AS vantage, " BY_POLE ("1", "lat_deg") " AS leading_lat_deg, "                       \
+  BY_POLE ("1", "carrington_lon_deg") " AS leading_carrington_lon_deg, "                           \
+  BY_POLE ("-1", "lat_deg") " AS following_lat_deg, " BY_POLE ("-1", "carrington_lon_deg")         \
+  " AS following_carrington_lon_deg, e.lat_deg AS lat_deg, e.cmd_deg AS cmd_deg, "                 \
+  "e.stonyhurst_lon_deg AS stonyhurst_lon_deg, e.carrington_lon_deg AS carrington_lon_deg, "       \
+  "e.mu AS mu, e.axis_bearing_deg AS axis_bearing_deg, e.axis_tilt_deg AS axis_tilt_deg, "         \
+  "e.tilt_sigma_deg AS tilt_sigma_deg, e.separation_deg AS separation_deg, "                       \
+  "e.separation_sigma_deg AS separation_sigma_deg, e.separation_mm AS separation_mm, "             \
+  "e.compactness AS compactness, e.pieces AS pieces, e.leading AS leading_polarity, "              \
+  "e.leading_sure AS leading_sure, e.flux_unsigned_mx AS flux_unsigned_mx, "                       \
+  "e.positive_flux_mx AS flux_positive_mx, e.negative_flux_mx AS flux_negative_mx, "               \
+  "e.imbalance AS imbalance, e.positive_area_msh + e.negative_area_msh AS magnetic_area_msh, "
 
-#define FLAT_SQL_3                                                                                                             \
-  " AS class, e.axial_dipole_gauss AS axial_dipole_gauss, e.floor_gauss AS floor_gauss,"                                       \
-  " CASE e.floor_kind WHEN 0 THEN 'local' ELSE 'even' END AS floor_kind, e.cautions AS cautions "
+#define FLAT_SQL_3                                                                                 \
+  " AS class, e.axial_dipole_gauss AS axial_dipole_gauss, e.floor_gauss AS floor_gauss, "          \
+  "CASE e.floor_kind WHEN 0 THEN 'local' ELSE 'even' END AS floor_kind, "                          \
+  "e.cautions AS cautions "
 
-#define VIEW_SQL                                                                                                               \
-  "CREATE VIEW marks AS SELECT g.number AS region, lower (hex (m.uid)) AS passage, lower (hex (m.uid)) AS mark,"               \
-  " CASE m.origin WHEN 0 THEN 'kept as hinted' WHEN 1 THEN 'changed' ELSE 'drawn new' END AS origin, m.label AS label,"        \
-  FLAT_SQL " p.name AS person, " FLAT_SQL_2                                                                                    \
-  " coalesce ((SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame AND c.person = m.person),"          \
-  " (SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame ORDER BY c.clock DESC LIMIT 1))" FLAT_SQL_3   \
-  "FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person JOIN measure e ON e.id = m.measure"           \
-  " JOIN frame f ON f.id = m.frame JOIN method t ON t.id = e.method WHERE m.live;"                                             \
-  "CREATE VIEW hints AS SELECT NULL AS region, NULL AS passage, lower (hex (h.cid)) AS mark, 'hint' AS origin,"                \
-  " NULL AS label, " FLAT_SQL " NULL AS person, " FLAT_SQL_2 " NULL" FLAT_SQL_3                                                \
-  "FROM point q JOIN hint h ON h.id = q.mark JOIN measure e ON e.id = h.measure JOIN frame f ON f.id = h.frame"                \
-  " JOIN method t ON t.id = e.method WHERE q.hint = 1;"                                                                        \
-  "CREATE VIEW frames AS SELECT f.path AS frame, f.checksum AS frame_checksum, f.hdu AS hdu, f.plane AS plane,"                \
-  " f.kind AS kind, f.role AS role, f.time_text AS time, f.time_source AS time_source, f.instrument AS instrument,"            \
-  " f.vantage AS vantage, f.noise_gauss AS noise_gauss, f.refusal AS refusal, f.simulated AS simulated,"                       \
-  " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 0) AS marks,"                                             \
-  " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 1) AS hints FROM frame f;"                                \
-  "CREATE VIEW regions AS SELECT g.number AS region, lower (hex (g.uid)) AS region_id, count (*) AS marks,"                    \
-  " min (e.time_text) AS first_time, max (e.time_text) AS last_time, avg (e.lat_deg) AS mean_lat_deg,"                         \
-  " max (e.flux_unsigned_mx) AS greatest_flux_unsigned_mx FROM region g JOIN mark m ON m.region = g.id AND m.live"             \
-  " JOIN measure e ON e.id = m.measure GROUP BY g.id;"                                                                         \
-  "CREATE VIEW journal AS SELECT lower (hex (r.id)) AS replica, a.seq AS seq, a.clock AS clock,"                               \
-  " strftime ('%Y-%m-%dT%H:%M:%fZ', a.wall / 1000.0, 'unixepoch') AS wall, a.kind AS kind, p.name AS person,"                  \
-  " lower (hex (a.subject)) AS subject, coalesce (d.undone, 0) > 0 AS undone, CAST (a.body AS TEXT) AS body"                   \
-  " FROM act a JOIN replica r ON r.no = a.replica LEFT JOIN deed d ON d.replica = a.replica AND d.seq = a.seq"                 \
-  " LEFT JOIN person p ON p.id = d.person ORDER BY a.clock, r.id, a.seq;"
+#define VIEW_SQL                                                                                   \
+  "CREATE VIEW marks AS SELECT g.number AS region, lower (hex (m.uid)) AS passage, "               \
+  "lower (hex (m.uid)) AS mark, "                                                                  \
+  "CASE m.origin WHEN 0 THEN 'kept as hinted' WHEN 1 THEN 'changed' ELSE 'drawn new' END AS origin, " \
+  "m.label AS label," FLAT_SQL " p.name AS person, " FLAT_SQL_2 " coalesce ((SELECT c.class "      \
+  "FROM class c WHERE c.region = m.region AND c.frame = m.frame AND c.person = m.person), "        \
+  "(SELECT c.class FROM class c "                                                                  \
+  "WHERE c.region = m.region AND c.frame = m.frame ORDER BY c.clock DESC LIMIT 1))" FLAT_SQL_3     \
+  "FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person "                 \
+  "JOIN measure e ON e.id = m.measure JOIN frame f ON f.id = m.frame "                             \
+  "JOIN method t ON t.id = e.method WHERE m.live;"                                                 \
+  "CREATE VIEW hints AS SELECT NULL AS region, NULL AS passage, lower (hex (h.cid)) AS mark, "     \
+  "'hint' AS origin, NULL AS label, " FLAT_SQL " NULL AS person, " FLAT_SQL_2 " NULL"              \
+  FLAT_SQL_3 "FROM point q JOIN hint h ON h.id = q.mark JOIN measure e ON e.id = h.measure "       \
+  "JOIN frame f ON f.id = h.frame JOIN method t ON t.id = e.method WHERE q.hint = 1;"              \
+  "CREATE VIEW frames AS SELECT f.path AS frame, f.checksum AS frame_checksum, f.hdu AS hdu, "     \
+  "f.plane AS plane, f.kind AS kind, f.role AS role, f.time_text AS time, "                        \
+  "f.time_source AS time_source, f.instrument AS instrument, f.vantage AS vantage, "               \
+  "f.noise_gauss AS noise_gauss, f.refusal AS refusal, f.simulated AS simulated, "                 \
+  "(SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 0) AS marks, "                 \
+  "(SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 1) AS hints FROM frame f;"     \
+  "CREATE VIEW regions AS SELECT g.number AS region, lower (hex (g.uid)) AS region_id, "           \
+  "count (*) AS marks, min (e.time_text) AS first_time, max (e.time_text) AS last_time, "          \
+  "avg (e.lat_deg) AS mean_lat_deg, max (e.flux_unsigned_mx) AS greatest_flux_unsigned_mx "        \
+  "FROM region g JOIN mark m ON m.region = g.id AND m.live "                                       \
+  "JOIN measure e ON e.id = m.measure GROUP BY g.id;"                                              \
+  "CREATE VIEW journal AS SELECT lower (hex (r.id)) AS replica, a.seq AS seq, "                    \
+  "a.clock AS clock, strftime ('%Y-%m-%dT%H:%M:%fZ', a.wall / 1000.0, 'unixepoch') AS wall, "      \
+  "a.kind AS kind, p.name AS person, lower (hex (a.subject)) AS subject, coalesce (d.undone, "     \
+  "0) > 0 AS undone, CAST (a.body AS TEXT) AS body FROM act a "                                    \
+  "JOIN replica r ON r.no = a.replica LEFT "                                                       \
+  "JOIN deed d ON d.replica = a.replica AND d.seq = a.seq LEFT "                                   \
+  "JOIN person p ON p.id = d.person ORDER BY a.clock, r.id, a.seq;"
 
 static const char *const version_1[] = { LOG_SQL MACHINE_SQL, tf_ledger_projection_sql, LOCAL_SQL VIEW_SQL, NULL };
 
@@ -207,96 +245,3 @@ const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 0, NULL },
 };
-
-/* Room for the copy and for what the migration may write: twice the file and a little. */
-static gboolean
-check_room (TfLedger *ledger, GError **error)
-{
-  struct stat file;
-  g_autofree char *folder = g_path_get_dirname (ledger->path);
-  struct statvfs room;
-  if (stat (ledger->path, &file) != 0 || statvfs (folder, &room) != 0)
-    return TRUE; /* cannot be told: VACUUM INTO will tell */
-  guint64 need = 2 * (guint64)file.st_size + (1 << 20);
-  guint64 free_bytes = (guint64)room.f_bavail * room.f_frsize;
-  if (free_bytes >= need)
-    return TRUE;
-  g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_FULL,
-               _ ("the ledger %s is of an older version; bringing it up to date needs %.0f MB for a backup beside it and "
-                  "there are %.0f MB. Make room and open it again; nothing was changed"),
-               ledger->path, (double)need / 1e6, (double)free_bytes / 1e6);
-  return FALSE;
-}
-
-static char *
-backup_path (TfLedger *ledger, int from)
-{
-  const char *ending = g_str_has_suffix (ledger->path, ".ledger") ? ".ledger" : "";
-  g_autofree char *stem = g_strndup (ledger->path, strlen (ledger->path) - strlen (ending));
-  g_autoptr (GDateTime) now = g_date_time_new_from_unix_utc (ledger->now (ledger->now_data) / 1000);
-  g_autofree char *date = g_date_time_format (now, "%Y-%m-%dT%H-%M-%SZ");
-  char *path = g_strdup_printf ("%s.version-%d.%s%s", stem, from, date, ending);
-  for (int k = 2; g_file_test (path, G_FILE_TEST_EXISTS); k++)
-    {
-      g_free (path);
-      path = g_strdup_printf ("%s.version-%d.%s.%d%s", stem, from, date, k, ending);
-    }
-  return path;
-}
-
-static gboolean
-back_up (TfLedger *ledger, int from, GError **error)
-{
-  if (!check_room (ledger, error))
-    return FALSE;
-  g_autofree char *path = backup_path (ledger, from);
-  if (!tf_run (ledger, error, "VACUUM INTO ?1", "t", path))
-    return FALSE;
-  tf_notes_add (ledger->notices, "ledger-migrated", "siis", ledger->path, from, TF_LEDGER_VERSION, path);
-  return TRUE;
-}
-
-static gboolean
-run_migration (TfLedger *ledger, const TfMigration *migration, GError **error)
-{
-  g_autofree char *version = g_strdup_printf ("PRAGMA user_version = %d", migration->to);
-  for (guint k = 0; migration->sql[k] != NULL; k++)
-    if (!tf_run_script (ledger, migration->sql[k], error))
-      return FALSE;
-  return tf_run_script (ledger, version, error);
-}
-
-/* What is there already stays. */
-static gboolean
-stamp (TfLedger *ledger, GError **error)
-{
-  g_autofree char *id = tf_uuid7 (ledger->now (ledger->now_data));
-  g_autofree char *application = g_strdup_printf ("PRAGMA application_id = %d", TF_LEDGER_APPLICATION);
-  char letter[2] = { ledger->letter, '\0' };
-  return tf_run_script (ledger, application, error)
-         && tf_run (ledger, error, "INSERT OR IGNORE INTO setting (key, value) VALUES ('ledger', ?1), ('letter', ?2)", "tt", id,
-                    letter);
-}
-
-/* All steps in one transaction: an older ledger is brought up whole or not at all. Another process may have done it meanwhile. */
-gboolean
-tf_ledger_migrate (TfLedger *ledger, int from, gboolean is_new, GError **error)
-{
-  if (!is_new && !back_up (ledger, from, error))
-    return FALSE;
-  if (!tf_run_script (ledger, "BEGIN IMMEDIATE", error))
-    return FALSE;
-  gint64 now_at = tf_value (ledger, NULL, from, "PRAGMA user_version", "");
-  for (const TfMigration *m = tf_ledger_migrations; m->sql != NULL; m++)
-    if (m->to > now_at && !run_migration (ledger, m, error))
-      {
-        tf_ledger_rollback (ledger);
-        return FALSE;
-      }
-  if (!stamp (ledger, error))
-    {
-      tf_ledger_rollback (ledger);
-      return FALSE;
-    }
-  return tf_ledger_commit (ledger, error);
-}

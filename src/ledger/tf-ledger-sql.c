@@ -11,10 +11,11 @@
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
-G_DEFINE_QUARK (tf-ledger-error-quark, tf_ledger_error)
+G_DEFINE_QUARK (tf - ledger - error - quark, tf_ledger_error)
 
-/* A write that fails because the disk, a quota or a size limit is reached is "full" whatever SQLite calls it. SQLite does not always
- * pass the system's code on; errno still has it right after the call. */
+/* A write that fails because the disk, a quota or a size limit is reached is "full" whatever
+ * SQLite calls it. SQLite does not always pass the system's code on; errno still has it right
+ * after the call. */
 static gboolean
 is_full (sqlite3 *db, int rc)
 {
@@ -34,19 +35,23 @@ tf_ledger_set_error (GError **error, sqlite3 *db, int rc, const char *path)
 {
   int primary = rc & 0xff;
   if (is_full (db, rc))
-    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_FULL,
-                 _ ("there is no room left for the ledger %s; nothing was changed. Make room and try again"), path);
+    g_set_error (
+        error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_FULL,
+        _ ("there is no room left for the ledger %s; nothing was changed. Make room and try again"),
+        path);
   else if (primary == SQLITE_BUSY || primary == SQLITE_LOCKED)
     g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_BUSY,
-                 _ ("another program holds the ledger %s and did not let go of it in time; nothing was changed. "
+                 _ ("another program holds the ledger %s and did not let go of it in time; nothing "
+                    "was changed. "
                     "Wait for it or close it, then try again"),
                  path);
   else if (primary == SQLITE_READONLY || primary == SQLITE_PERM)
     g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_READ_ONLY,
                  _ ("the ledger %s cannot be written here; copy it to a folder of your own"), path);
   else if (primary == SQLITE_CANTOPEN)
-    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_OPEN,
-                 _ ("the ledger %s cannot be opened; look whether the file is there and may be read"), path);
+    g_set_error (
+        error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_OPEN,
+        _ ("the ledger %s cannot be opened; look whether the file is there and may be read"), path);
   else if (primary == SQLITE_NOTADB)
     g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_OPEN, _ ("%s is not a ledger"), path);
   else if (primary == SQLITE_CORRUPT)
@@ -129,7 +134,8 @@ query_va (TfLedger *ledger, GError **error, const char *sql, const char *types, 
   sqlite3_stmt *query = g_hash_table_lookup (ledger->statements, sql);
   if (query == NULL)
     {
-      if (sqlite3_prepare_v3 (ledger->db, sql, -1, SQLITE_PREPARE_PERSISTENT, &query, NULL) != SQLITE_OK)
+      if (sqlite3_prepare_v3 (ledger->db, sql, -1, SQLITE_PREPARE_PERSISTENT, &query, NULL)
+          != SQLITE_OK)
         {
           set_error (ledger, error);
           return NULL;
@@ -192,7 +198,8 @@ tf_run (TfLedger *ledger, GError **error, const char *sql, const char *types, ..
 }
 
 gint64
-tf_value (TfLedger *ledger, GError **error, gint64 fallback, const char *sql, const char *types, ...)
+tf_value (TfLedger *ledger, GError **error, gint64 fallback, const char *sql, const char *types,
+          ...)
 {
   va_list ap;
   va_start (ap, types);
@@ -228,7 +235,8 @@ tf_run_script (TfLedger *ledger, const char *sql, GError **error)
 double
 tf_column_double (sqlite3_stmt *query, int column)
 {
-  return sqlite3_column_type (query, column) == SQLITE_NULL ? NAN : sqlite3_column_double (query, column);
+  return sqlite3_column_type (query, column) == SQLITE_NULL ? NAN
+                                                            : sqlite3_column_double (query, column);
 }
 
 const char *
@@ -276,7 +284,8 @@ tf_ledger_commit (TfLedger *ledger, GError **error)
 void
 tf_ledger_rollback (TfLedger *ledger)
 {
-  /* SQLite may have rolled back already (disk full); an error here says no more than the one being reported. */
+  /* SQLite may have rolled back already (disk full); an error here says no more than the one being
+   * reported. */
   if (!sqlite3_get_autocommit (ledger->db))
     tf_run (ledger, NULL, "ROLLBACK", "");
   if (ledger->replica_is_new)

@@ -2,8 +2,9 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Undo and redo are acts that name the act they take back or bring again. A person walks back through the deeds this replica
- * recorded for them, as far as there are any, and forward again until a new deed is done. */
+/* Undo and redo are acts that name the act they take back or bring again. A person walks back
+ * through the deeds this replica recorded for them, as far as there are any, and forward again
+ * until a new deed is done. */
 
 #include "tf-ledger-private.h"
 
@@ -11,8 +12,10 @@
 
 #include "tf-json.h"
 
-#define DEEDS "FROM deed d JOIN act a ON a.replica = d.replica AND a.seq = d.seq" \
-              " WHERE d.person = ?1 AND d.replica = ?2 AND a.kind IN ('keep', 'withdraw', 'drop', 'class', 'note')"
+#define DEEDS                                                                                      \
+  "FROM deed d JOIN act a ON a.replica = d.replica AND a.seq = d.seq"                              \
+  " WHERE d.person = ?1 AND d.replica = ?2 AND a.kind IN ('keep', 'withdraw', 'drop', 'class', "   \
+  "'note')"
 #define LAST_SQL "SELECT d.seq " DEEDS " AND d.undone = 0 ORDER BY d.seq DESC LIMIT 1"
 #define NEXT_SQL "SELECT d.seq " DEEDS " AND d.undone = 1 ORDER BY d.seq LIMIT 1"
 
@@ -25,10 +28,11 @@ find_deed (TfLedger *ledger, const char *sql, gint64 person, GError **error)
 static gboolean
 append (TfLedger *ledger, const char *kind, gint64 seq, gint64 person, GError **error)
 {
-  g_autofree char *subject = tf_text_value (ledger, error,
-                                            "SELECT lower (hex (subject)) FROM act WHERE replica = ?1 AND seq = ?2", "ii",
-                                            ledger->replica, seq);
-  g_autofree char *uid = tf_text_value (ledger, error, "SELECT lower (hex (uid)) FROM person WHERE id = ?1", "i", person);
+  g_autofree char *subject = tf_text_value (
+      ledger, error, "SELECT lower (hex (subject)) FROM act WHERE replica = ?1 AND seq = ?2", "ii",
+      ledger->replica, seq);
+  g_autofree char *uid = tf_text_value (
+      ledger, error, "SELECT lower (hex (uid)) FROM person WHERE id = ?1", "i", person);
   if (subject == NULL || uid == NULL)
     return FALSE;
   g_autoptr (JsonBuilder) body = json_builder_new ();
@@ -41,7 +45,8 @@ append (TfLedger *ledger, const char *kind, gint64 seq, gint64 person, GError **
 }
 
 static gboolean
-walk (TfLedger *ledger, const char *kind, const char *sql, const char *nothing, gint64 person, char **what, GError **error)
+walk (TfLedger *ledger, const char *kind, const char *sql, const char *nothing, gint64 person,
+      char **what, GError **error)
 {
   if (!tf_ledger_begin (ledger, error))
     return FALSE;
@@ -59,7 +64,8 @@ walk (TfLedger *ledger, const char *kind, const char *sql, const char *nothing, 
     return FALSE;
   tf_replica_store_state (ledger);
   if (what != NULL)
-    *what = tf_text_value (ledger, NULL, "SELECT kind FROM act WHERE replica = ?1 AND seq = ?2", "ii", ledger->replica, seq);
+    *what = tf_text_value (ledger, NULL, "SELECT kind FROM act WHERE replica = ?1 AND seq = ?2",
+                           "ii", ledger->replica, seq);
   return TRUE;
 }
 

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Opening and closing. A ledger that cannot be written for whatever reason is opened for reading, with a note that says why. */
+/* Opening and closing. A ledger that cannot be written for whatever reason is opened for reading,
+ * with a note that says why. */
 
 #include "tf-ledger-private.h"
 
@@ -12,7 +13,11 @@
 #include <unistd.h>
 #include <glib/gi18n-lib.h>
 
-enum { BUSY_MS = 10000, LONGEST_VALUE = 64 << 20 };
+enum
+{
+  BUSY_MS = 10000,
+  LONGEST_VALUE = 64 << 20
+};
 
 static gint64
 machine_now (gpointer data)
@@ -26,7 +31,8 @@ ledger_new (const char *path, const TfLedgerHow *how)
   TfLedger *ledger = g_new0 (TfLedger, 1);
   ledger->path = g_canonicalize_filename (path, NULL);
   ledger->state_dir = how->state_dir != NULL ? g_strdup (how->state_dir)
-                                             : g_build_filename (g_get_user_state_dir (), "tiltfield", "replicas", NULL);
+                                             : g_build_filename (g_get_user_state_dir (),
+                                                                 "tiltfield", "replicas", NULL);
   ledger->busy_ms = how->busy_ms > 0 ? how->busy_ms : BUSY_MS;
   ledger->now = how->now != NULL ? how->now : machine_now;
   ledger->now_data = how->now_data;
@@ -114,16 +120,18 @@ disconnect (TfLedger *ledger)
   g_clear_pointer (&ledger->db, sqlite3_close);
 }
 
-/* In a folder that cannot be written the files beside a WAL ledger cannot be made: then the file is read as one that does not change,
- * which holds as long as nobody else can write it either. */
+/* In a folder that cannot be written the files beside a WAL ledger cannot be made: then the file
+ * is read as one that does not change, which holds as long as nobody else can write it either. */
 static gboolean
 connect_reading (TfLedger *ledger, gint64 *application, gint64 *version, GError **error)
 {
   ledger->read_only = tf_note_new ("ledger-not-writable", "s", ledger->path);
-  if (connect_to (ledger, "?mode=ro", FALSE, NULL) && read_stamp (ledger, application, version, NULL))
+  if (connect_to (ledger, "?mode=ro", FALSE, NULL)
+      && read_stamp (ledger, application, version, NULL))
     return TRUE;
   disconnect (ledger);
-  return connect_to (ledger, "?mode=ro&immutable=1", FALSE, error) && read_stamp (ledger, application, version, error);
+  return connect_to (ledger, "?mode=ro&immutable=1", FALSE, error)
+         && read_stamp (ledger, application, version, error);
 }
 
 static gboolean
@@ -132,7 +140,8 @@ find_stamp (TfLedger *ledger, gint64 *application, gint64 *version, GError **err
   if (!can_write (ledger->path))
     return connect_reading (ledger, application, version, error);
   GError *problem = NULL;
-  if (connect_to (ledger, "", TRUE, &problem) && read_stamp (ledger, application, version, &problem))
+  if (connect_to (ledger, "", TRUE, &problem)
+      && read_stamp (ledger, application, version, &problem))
     return TRUE;
   if (!g_error_matches (problem, TF_LEDGER_ERROR, TF_LEDGER_ERROR_READ_ONLY))
     {
@@ -169,7 +178,8 @@ set_pragmas (TfLedger *ledger, GError **error)
 static gboolean
 read_letter (TfLedger *ledger)
 {
-  g_autofree char *letter = tf_text_value (ledger, NULL, "SELECT value FROM setting WHERE key = 'letter'", "");
+  g_autofree char *letter
+      = tf_text_value (ledger, NULL, "SELECT value FROM setting WHERE key = 'letter'", "");
   if (letter == NULL || !g_ascii_isupper (*letter))
     return FALSE;
   ledger->letter = *letter;
@@ -182,16 +192,19 @@ bring_up (TfLedger *ledger, gint64 application, gint64 version, gboolean create,
 {
   gboolean is_new = create && application == 0 && version == 0 && is_empty (ledger);
   if (application != TF_LEDGER_APPLICATION && !is_new)
-    return fail (error, TF_LEDGER_ERROR_OPEN, _ ("%s is not a ledger; nothing was changed"), ledger->path);
+    return fail (error, TF_LEDGER_ERROR_OPEN, _ ("%s is not a ledger; nothing was changed"),
+                 ledger->path);
   if (version > TF_LEDGER_VERSION)
     {
       tf_note_free (ledger->read_only);
-      ledger->read_only = tf_note_new ("ledger-newer-version", "sii", ledger->path, (int)version, TF_LEDGER_VERSION);
+      ledger->read_only = tf_note_new ("ledger-newer-version", "sii", ledger->path, (int)version,
+                                       TF_LEDGER_VERSION);
       return tf_run (ledger, error, "PRAGMA query_only = 1", "");
     }
   if (version < TF_LEDGER_VERSION && ledger->read_only != NULL)
     return fail (error, TF_LEDGER_ERROR_READ_ONLY,
-                 _ ("the ledger %s is of an older version and cannot be brought up to date here, because it cannot be written; copy "
+                 _ ("the ledger %s is of an older version and cannot be brought up to date here, "
+                    "because it cannot be written; copy "
                     "it to a folder of your own and open it there"),
                  ledger->path);
   if (ledger->read_only != NULL)
@@ -205,11 +218,14 @@ static gboolean
 open_file (TfLedger *ledger, gboolean create, GError **error)
 {
   gint64 application = 0, version = 0;
-  if (!find_stamp (ledger, &application, &version, error) || !bring_up (ledger, application, version, create, error))
+  if (!find_stamp (ledger, &application, &version, error)
+      || !bring_up (ledger, application, version, create, error))
     return FALSE;
   if (!read_letter (ledger) && ledger->read_only == NULL)
-    return fail (error, TF_LEDGER_ERROR_DAMAGED, _ ("the ledger %s is damaged: its settings are missing; go back to a backup of it"),
-                 ledger->path);
+    return fail (
+        error, TF_LEDGER_ERROR_DAMAGED,
+        _ ("the ledger %s is damaged: its settings are missing; go back to a backup of it"),
+        ledger->path);
   return ledger->read_only != NULL || tf_replica_choose (ledger, error);
 }
 
@@ -224,10 +240,12 @@ make_file (const char *path, const TfLedgerHow *how, GError **error)
       return TRUE;
     }
   if (errno == EEXIST)
-    return fail (error, TF_LEDGER_ERROR_OPEN, _ ("%s is there already; open it, or choose another name"), path);
+    return fail (error, TF_LEDGER_ERROR_OPEN,
+                 _ ("%s is there already; open it, or choose another name"), path);
   if (errno == EACCES && g_file_test (path, G_FILE_TEST_EXISTS))
     return TRUE; /* opens for reading */
-  g_set_error (error, TF_LEDGER_ERROR, errno == ENOSPC ? TF_LEDGER_ERROR_FULL : TF_LEDGER_ERROR_OPEN,
+  g_set_error (error, TF_LEDGER_ERROR,
+               errno == ENOSPC ? TF_LEDGER_ERROR_FULL : TF_LEDGER_ERROR_OPEN,
                _ ("the ledger %s cannot be made: %s"), path, g_strerror (errno));
   return FALSE;
 }
@@ -238,7 +256,8 @@ tf_ledger_open_how (const char *path, const TfLedgerHow *how, GError **error)
   g_return_val_if_fail (path != NULL && how != NULL, NULL);
   if (sodium_init () < 0)
     {
-      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DATABASE, _ ("the hashing library cannot be started"));
+      g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_DATABASE,
+                   _ ("the hashing library cannot be started"));
       return NULL;
     }
   if (how->letter != '\0' && !g_ascii_isupper (how->letter))
@@ -261,7 +280,8 @@ tf_ledger_open_how (const char *path, const TfLedgerHow *how, GError **error)
 TfLedger *
 tf_ledger_create (const char *path, char letter, GError **error)
 {
-  return tf_ledger_open_how (path, &(TfLedgerHow){ .create = TRUE, .must_be_new = TRUE, .letter = letter }, error);
+  return tf_ledger_open_how (
+      path, &(TfLedgerHow){ .create = TRUE, .must_be_new = TRUE, .letter = letter }, error);
 }
 
 TfLedger *

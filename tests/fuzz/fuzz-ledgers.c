@@ -2,10 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* A small ledger, mutated from a seed, opened, checked, read and written to: errors and findings, no crash, no hang.
- * Two kinds of mutation by turns: bytes of the file, and values in its tables (the file itself is then sound, and what is wrong
- * reaches the readers of bodies, outlines, notes and headers).
- * Usage: fuzz-ledgers [MUTATIONS [SEED]]. */
+/* A small ledger, mutated from a seed, opened, checked, read and written to: errors and findings,
+ * no crash, no hang. Two kinds of mutation by turns: bytes of the file, and values in its tables
+ * (the file itself is then sound, and what is wrong reaches the readers of bodies, outlines, notes
+ * and headers). Usage: fuzz-ledgers [MUTATIONS [SEED]]. */
 
 #include <glib.h>
 #include <glib/gstdio.h>
@@ -26,23 +26,34 @@ typedef struct
 static TfLedger *
 open_at (const Place *place, GError **error)
 {
-  return tf_ledger_open_how (place->path, &(TfLedgerHow){ .create = TRUE, .letter = 'F', .state_dir = place->state }, error);
+  return tf_ledger_open_how (
+      place->path, &(TfLedgerHow){ .create = TRUE, .letter = 'F', .state_dir = place->state },
+      error);
 }
 
 static void
 fill_measure (TfMeasure *measure, TfTime time)
 {
-  *measure = (TfMeasure){ .time = time, .floor_kind = TF_FLOOR_EVEN, .floor_gauss = 50, .scale = NAN, .leading_polarity = 1,
-                          .lat_deg = 12, .axis_tilt_deg = 5, .flux_unsigned_mx = 2e22, .pieces = 2, .cautions = tf_notes_new () };
+  *measure = (TfMeasure){ .time = time,
+                          .floor_kind = TF_FLOOR_EVEN,
+                          .floor_gauss = 50,
+                          .scale = NAN,
+                          .leading_polarity = 1,
+                          .lat_deg = 12,
+                          .axis_tilt_deg = 5,
+                          .flux_unsigned_mx = 2e22,
+                          .pieces = 2,
+                          .cautions = tf_notes_new () };
 }
 
 static gint64
 add_frame (TfLedger *ledger, int n)
 {
-  g_autoptr (TfHeader) header = tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCRPIX1  = 20\nCRPIX2  = 20\nCDELT1  = 60\n"
-                                                "CDELT2  = 60\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\nBUNIT   = 'G'\n"
-                                                "DATE-OBS= '2013-10-12T06:00:00'\n",
-                                                -1);
+  g_autoptr (TfHeader) header = tf_header_read (
+      "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCRPIX1  = 20\nCRPIX2  = 20\nCDELT1  = 60\n"
+      "CDELT2  = 60\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\nBUNIT   = 'G'\n"
+      "DATE-OBS= '2013-10-12T06:00:00'\n",
+      -1);
   g_autoptr (TfFrameInfo) info = tf_frame_info_read (header, 40, 40);
   g_autofree char *checksum = g_strdup_printf ("%064d", n);
   return tf_ledger_add_frame (ledger, "/frames/a.fits", checksum, 1, 1, info, 9, NULL);
@@ -55,8 +66,13 @@ keep (TfLedger *ledger, gint64 frame, gint64 person, gint64 follows)
   g_autoptr (TfOutline) outline = tf_outline_new_cap (time, 100, 12, 4, 8);
   g_auto (TfMeasure) measure = { 0 };
   fill_measure (&measure, time);
-  TfMarkDeed deed = { .frame = frame, .person = person, .follows = follows, .origin = TF_MARK_DRAWN, .outline = outline,
-                      .measure = &measure, .method = "flux-centroid/1" };
+  TfMarkDeed deed = { .frame = frame,
+                      .person = person,
+                      .follows = follows,
+                      .origin = TF_MARK_DRAWN,
+                      .outline = outline,
+                      .measure = &measure,
+                      .method = "flux-centroid/1" };
   return tf_ledger_keep (ledger, &deed, NULL);
 }
 
@@ -83,8 +99,10 @@ make_ledger (const Place *place)
     }
   gboolean ok = tf_ledger_add_hints (ledger, frame, "plain/1", hints, "flux-centroid/1", NULL);
   gint64 one = keep (ledger, frame, person, 0), two = keep (ledger, frame, person, one);
-  ok = ok && two != 0 && tf_ledger_drop_hint (ledger, 1, person, NULL) && tf_ledger_set_note (ledger, 1, person, "n", NULL)
-       && tf_ledger_set_class (ledger, 1, frame, person, "β", "m", NULL) && tf_ledger_undo (ledger, person, NULL, NULL)
+  ok = ok && two != 0 && tf_ledger_drop_hint (ledger, 1, person, NULL)
+       && tf_ledger_set_note (ledger, 1, person, "n", NULL)
+       && tf_ledger_set_class (ledger, 1, frame, person, "β", "m", NULL)
+       && tf_ledger_undo (ledger, person, NULL, NULL)
        && tf_ledger_set_draft (ledger, frame, person, "d", NULL);
   g_clear_pointer (&ledger, tf_ledger_close);
   sqlite3 *db = NULL;
@@ -98,7 +116,8 @@ make_ledger (const Place *place)
   return g_bytes_new_take (bytes, n);
 }
 
-/* -- mutations ---------------------------------------------------------------------------------------- */
+/* -- mutations
+ * ---------------------------------------------------------------------------------------- */
 static void
 mutate_file (const Place *place, GBytes *source, GRand *chance)
 {
@@ -113,11 +132,13 @@ mutate_file (const Place *place, GBytes *source, GRand *chance)
       g_byte_array_set_size (out, (guint)g_rand_int_range (chance, 1, (gint)n));
       break;
     case 1: /* one page over another */
-      memcpy (out->data + page, data + (guint)g_rand_int_range (chance, 0, (gint)(n / 4096)) * 4096, 4096);
+      memcpy (out->data + page, data + (guint)g_rand_int_range (chance, 0, (gint)(n / 4096)) * 4096,
+              4096);
       break;
     case 2: /* the head of a page */
       for (int k = 0; k < 3; k++)
-        out->data[page + (guint)g_rand_int_range (chance, 0, 24)] = (guint8)g_rand_int_range (chance, 0, 256);
+        out->data[page + (guint)g_rand_int_range (chance, 0, 24)]
+            = (guint8)g_rand_int_range (chance, 0, 256);
       break;
     default:
       fuzz_flip (out, chance, 20);
@@ -132,12 +153,14 @@ typedef struct
 } Cell;
 
 static const Cell cells[] = {
-  { "act", "body" },         { "act", "subject" },      { "act", "kind" },     { "act", "clock" },      { "act", "hash" },
-  { "frame", "info" },       { "frame", "kind" },       { "frame", "time" },   { "frame", "cid" },      { "measure", "notes" },
-  { "measure", "leading" },  { "measure", "lat_deg" },  { "hint", "outline" }, { "hint", "notes" },     { "hint", "cid" },
-  { "mark", "outline" },     { "mark", "origin" },      { "mark", "uid" },     { "region", "number" },  { "region", "uid" },
-  { "person", "name" },      { "person", "uid" },       { "deed", "undone" },  { "point", "time" },     { "replica", "id" },
-  { "setting", "value" },    { "run", "rule" },         { "have", "upto" },    { "note", "text" },      { "method", "text" },
+  { "act", "body" },     { "act", "subject" },   { "act", "kind" },        { "act", "clock" },
+  { "act", "hash" },     { "frame", "info" },    { "frame", "kind" },      { "frame", "time" },
+  { "frame", "cid" },    { "measure", "notes" }, { "measure", "leading" }, { "measure", "lat_deg" },
+  { "hint", "outline" }, { "hint", "notes" },    { "hint", "cid" },        { "mark", "outline" },
+  { "mark", "origin" },  { "mark", "uid" },      { "region", "number" },   { "region", "uid" },
+  { "person", "name" },  { "person", "uid" },    { "deed", "undone" },     { "point", "time" },
+  { "replica", "id" },   { "setting", "value" }, { "run", "rule" },        { "have", "upto" },
+  { "note", "text" },    { "method", "text" },
 };
 
 static GByteArray *
@@ -165,10 +188,12 @@ mutate_value (const guint8 *bytes, int n, GRand *chance)
 static void
 write_value (sqlite3 *db, const Cell *cell, sqlite3_stmt *old, GRand *chance)
 {
-  g_autofree char *sql = g_strdup_printf ("UPDATE OR IGNORE %s SET %s = ?1", cell->table, cell->column);
+  g_autofree char *sql
+      = g_strdup_printf ("UPDATE OR IGNORE %s SET %s = ?1", cell->table, cell->column);
   sqlite3_stmt *query = NULL;
   int type = sqlite3_column_type (old, 0);
-  g_autoptr (GByteArray) value = mutate_value (sqlite3_column_blob (old, 0), sqlite3_column_bytes (old, 0), chance);
+  g_autoptr (GByteArray) value
+      = mutate_value (sqlite3_column_blob (old, 0), sqlite3_column_bytes (old, 0), chance);
   if (sqlite3_prepare_v2 (db, sql, -1, &query, NULL) != SQLITE_OK)
     abort ();
   if (type == SQLITE_TEXT)
@@ -187,11 +212,12 @@ mutate_values (const Place *place, GBytes *source, GRand *chance)
   gsize n = 0;
   const char *data = g_bytes_get_data (source, &n);
   const Cell *cell = &cells[g_rand_int_range (chance, 0, G_N_ELEMENTS (cells))];
-  g_autofree char *sql = g_strdup_printf ("SELECT %s FROM %s LIMIT 1 OFFSET %d", cell->column, cell->table,
-                                          g_rand_int_range (chance, 0, 3));
+  g_autofree char *sql = g_strdup_printf ("SELECT %s FROM %s LIMIT 1 OFFSET %d", cell->column,
+                                          cell->table, g_rand_int_range (chance, 0, 3));
   sqlite3 *db = NULL;
   sqlite3_stmt *query = NULL;
-  if (!g_file_set_contents (place->path, data, (gssize)n, NULL) || sqlite3_open (place->path, &db) != SQLITE_OK
+  if (!g_file_set_contents (place->path, data, (gssize)n, NULL)
+      || sqlite3_open (place->path, &db) != SQLITE_OK
       || sqlite3_prepare_v2 (db, sql, -1, &query, NULL) != SQLITE_OK)
     abort ();
   sqlite3_exec (db, "PRAGMA synchronous = OFF", NULL, NULL, NULL);
@@ -204,7 +230,8 @@ mutate_values (const Place *place, GBytes *source, GRand *chance)
   sqlite3_close (db);
 }
 
-/* -- what is done with it ------------------------------------------------------------------------------ */
+/* -- what is done with it
+ * ------------------------------------------------------------------------------ */
 static void
 must_say (GError **error, gboolean ok, const char *what)
 {
@@ -228,7 +255,8 @@ use (const Place *place)
       return TRUE;
     }
   g_autoptr (TfNotes) findings = tf_notes_new ();
-  gboolean checked = tf_ledger_check (ledger, findings, &error), wrong = !checked || findings->len > 0;
+  gboolean checked = tf_ledger_check (ledger, findings, &error),
+           wrong = !checked || findings->len > 0;
   must_say (&error, checked, "check");
   for (guint k = 0; k < findings->len; k++)
     g_free (tf_note_dup_text (tf_notes_get (findings, k), TRUE));
@@ -252,7 +280,8 @@ use (const Place *place)
 static void
 clean_up (const Place *place)
 {
-  g_autofree char *wal = g_strconcat (place->path, "-wal", NULL), *shm = g_strconcat (place->path, "-shm", NULL);
+  g_autofree char *wal = g_strconcat (place->path, "-wal", NULL),
+                  *shm = g_strconcat (place->path, "-shm", NULL);
   g_autofree char *journal = g_strconcat (place->path, "-journal", NULL);
   g_unlink (wal);
   g_unlink (shm);
@@ -281,7 +310,8 @@ main (int argc, char **argv)
   g_autoptr (GRand) chance = g_rand_new_with_seed (seed);
   /* memory, where there is such a folder: each mutation is some ten writes that wait for the disk */
   const char *top = g_file_test ("/dev/shm", G_FILE_TEST_IS_DIR) ? "/dev/shm" : g_get_tmp_dir ();
-  g_autofree char *folder = g_mkdtemp (g_build_filename (top, "tf-fuzz-XXXXXX", NULL)), *path = g_build_filename (folder, "a.ledger", NULL);
+  g_autofree char *folder = g_mkdtemp (g_build_filename (top, "tf-fuzz-XXXXXX", NULL)),
+                  *path = g_build_filename (folder, "a.ledger", NULL);
   g_autofree char *state = g_build_filename (folder, "state", NULL);
   Place place = { folder, path, state };
   g_autoptr (GBytes) source = make_ledger (&place);
@@ -303,7 +333,8 @@ main (int argc, char **argv)
         }
       found += use (&place);
     }
-  printf ("ok 2 - %u mutations from seed %u, %u of them found out, end in errors and findings\n", n, seed, found);
+  printf ("ok 2 - %u mutations from seed %u, %u of them found out, end in errors and findings\n", n,
+          seed, found);
   /* what is not found out: free pages, values set to what they were, drafts */
   gboolean most = found > n / 2;
   printf ("%s 3 - most mutations are found out\n1..3\n", most ? "ok" : "not ok");

@@ -9,7 +9,10 @@
 
 #include "tf-frame-write.h"
 
-enum { SIZE = 256 };
+enum
+{
+  SIZE = 256
+};
 
 static double
 spot (double x, double y, double cx, double cy, double width)
@@ -29,7 +32,8 @@ make_pixels (float *pixels, int seed)
         double noise = 0, r = hypot (x - 128.5, y - 128.5);
         for (int k = 0; k < 12; k++)
           noise += g_rand_double (rand) - 0.5;
-        double cx = 110 + 3 * (seed % 7), b = 900 * spot (x, y, cx, 160, 3) - 900 * spot (x, y, cx + 12, 157, 3);
+        double cx = 110 + 3 * (seed % 7),
+               b = 900 * spot (x, y, cx, 160, 3) - 900 * spot (x, y, cx + 12, 157, 3);
         b += 700 * spot (x, y, 150, 90, 2.5) - 700 * spot (x, y, 139, 93, 2.5);
         pixels[(y - 1) * SIZE + x - 1] = (float)(r < radius ? b + 8 * noise : NAN);
       }
@@ -41,12 +45,18 @@ write_picture (const char *path, int seed, const char *content, const char *unit
   g_autoptr (GError) error = NULL;
   g_autoptr (TfHeader) header = tf_header_new ();
   g_autofree float *pixels = g_new (float, SIZE *SIZE);
-  const char *const words[][2] = { { "CTYPE1", "HPLN-TAN" }, { "CTYPE2", "HPLT-TAN" }, { "CUNIT1", "arcsec" },
-                                   { "CUNIT2", "arcsec" }, { "TELESCOP", "Brindle Head" }, { "INSTRUME", "magnetograph" },
-                                   { "CONTENT", content }, { "BUNIT", unit } };
-  const struct { const char *key; double value; } numbers[] = {
-    { "CRPIX1", 128.5 }, { "CRPIX2", 128.5 }, { "CRVAL1", 0 }, { "CRVAL2", 0 }, { "CDELT1", 8 }, { "CDELT2", 8 },
-    { "CROTA2", 0 }, { "DSUN_OBS", 1.49e11 }, { "HGLN_OBS", 0 }, { "HGLT_OBS", 5.5 }, { "RSUN_REF", 6.957e8 },
+  const char *const words[][2] = { { "CTYPE1", "HPLN-TAN" },       { "CTYPE2", "HPLT-TAN" },
+                                   { "CUNIT1", "arcsec" },         { "CUNIT2", "arcsec" },
+                                   { "TELESCOP", "Brindle Head" }, { "INSTRUME", "magnetograph" },
+                                   { "CONTENT", content },         { "BUNIT", unit } };
+  const struct
+  {
+    const char *key;
+    double value;
+  } numbers[] = {
+    { "CRPIX1", 128.5 }, { "CRPIX2", 128.5 }, { "CRVAL1", 0 },         { "CRVAL2", 0 },
+    { "CDELT1", 8 },     { "CDELT2", 8 },     { "CROTA2", 0 },         { "DSUN_OBS", 1.49e11 },
+    { "HGLN_OBS", 0 },   { "HGLT_OBS", 5.5 }, { "RSUN_REF", 6.957e8 },
   };
   g_autofree char *date = g_strdup_printf ("2013-10-%02dT06:00:00.000", 1 + seed % 28);
   for (guint k = 0; k < G_N_ELEMENTS (words); k++)
@@ -55,7 +65,8 @@ write_picture (const char *path, int seed, const char *content, const char *unit
     tf_header_set_number (header, numbers[k].key, numbers[k].value);
   tf_header_set (header, "DATE-OBS", date);
   make_pixels (pixels, seed);
-  gboolean ok = tf_frame_write (path, header, pixels, SIZE, SIZE, &(TfFrameWrite){ .bitpix = -32, .no_date = TRUE }, &error);
+  gboolean ok = tf_frame_write (path, header, pixels, SIZE, SIZE,
+                                &(TfFrameWrite){ .bitpix = -32, .no_date = TRUE }, &error);
   g_assert_no_error (error);
   g_assert_true (ok);
 }
@@ -119,7 +130,8 @@ TfLedger *
 open_ledger (Fixture *f, const char *path)
 {
   g_autoptr (GError) error = NULL;
-  TfLedger *ledger = tf_ledger_open_how (path, &(TfLedgerHow){ .create = TRUE, .letter = 'B', .state_dir = f->state }, &error);
+  TfLedger *ledger = tf_ledger_open_how (
+      path, &(TfLedgerHow){ .create = TRUE, .letter = 'B', .state_dir = f->state }, &error);
   g_assert_no_error (error);
   return ledger;
 }
@@ -154,7 +166,8 @@ fill (Fixture *f, TfLedger *ledger, const TfIntakeParams *params, Tally *tally)
   char *paths[] = { f->frames, NULL };
   g_auto (GStrv) files = tf_intake_list (paths, &error);
   g_assert_no_error (error);
-  gboolean ok = tf_intake_fill (ledger, files, params, tally->cancel_after_one, on_report, tally, &error);
+  gboolean ok
+      = tf_intake_fill (ledger, files, params, tally->cancel_after_one, on_report, tally, &error);
   if (tally->cancel_after_one == NULL)
     g_assert_no_error (error);
   g_assert_cmpint (ok, ==, error == NULL);
@@ -163,8 +176,9 @@ fill (Fixture *f, TfLedger *ledger, const TfIntakeParams *params, Tally *tally)
 char *
 machine_ids (const char *path)
 {
-  static const char sql[] = "SELECT hex (cid) FROM (SELECT cid FROM frame UNION ALL SELECT cid FROM measure"
-                            " UNION ALL SELECT cid FROM hint) ORDER BY cid";
+  static const char sql[]
+      = "SELECT hex (cid) FROM (SELECT cid FROM frame UNION ALL SELECT cid FROM measure"
+        " UNION ALL SELECT cid FROM hint) ORDER BY cid";
   sqlite3 *db = NULL;
   sqlite3_stmt *query = NULL;
   GString *ids = g_string_new (NULL);

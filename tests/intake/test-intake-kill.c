@@ -2,8 +2,9 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* kill -9 at moments drawn by lot, while filling and while marking. Afterwards the file is whole, what was told as saved is there,
- * and filling again ends in the same rows as a run that nobody disturbed. */
+/* kill -9 at moments drawn by lot, while filling and while marking. Afterwards the file is whole,
+ * what was told as saved is there, and filling again ends in the same rows as a run that nobody
+ * disturbed. */
 
 #include "test-intake.h"
 
@@ -12,9 +13,13 @@
 #include <sys/wait.h>
 #include <unistd.h>
 
-enum { KILLS = 20 };
+enum
+{
+  KILLS = 20
+};
 
-/* Children are this program run anew (a forked child of a threaded parent has none of its threads): "--child fill|marks FOLDER". */
+/* Children are this program run anew (a forked child of a threaded parent has none of its
+ * threads): "--child fill|marks FOLDER". */
 static void
 child_fill (Fixture *f)
 {
@@ -72,7 +77,8 @@ test_kill_fill (Fixture *f, gconstpointer data)
       if (k % 5 == 0)
         {
           g_unlink (f->path); /* begin anew now and then, so that all stages of a fill are hit */
-          g_autofree char *wal = g_strconcat (f->path, "-wal", NULL), *shm = g_strconcat (f->path, "-shm", NULL);
+          g_autofree char *wal = g_strconcat (f->path, "-wal", NULL),
+                          *shm = g_strconcat (f->path, "-shm", NULL);
           g_unlink (wal);
           g_unlink (shm);
         }
@@ -96,19 +102,26 @@ child_marks (Fixture *f)
 {
   g_autoptr (TfLedger) ledger = open_ledger (f, f->path);
   gint64 person = tf_ledger_person (ledger, "north", NULL);
-  g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &(TfRowQuery){ .hints = TRUE, .judged_hints = TRUE }, NULL);
+  g_autoptr (GPtrArray) rows
+      = tf_ledger_rows (ledger, &(TfRowQuery){ .hints = TRUE, .judged_hints = TRUE }, NULL);
   const TfRow *row = g_ptr_array_index (rows, 0);
   for (;;)
     {
-      TfMarkDeed deed = { .frame = row->frame, .person = person, .origin = TF_MARK_CHANGED, .hint = row->mark,
-                          .outline = row->outline, .measure = &row->measure, .method = row->method };
+      TfMarkDeed deed = { .frame = row->frame,
+                          .person = person,
+                          .origin = TF_MARK_CHANGED,
+                          .hint = row->mark,
+                          .outline = row->outline,
+                          .measure = &row->measure,
+                          .method = row->method };
       gint64 mark = tf_ledger_keep (ledger, &deed, NULL);
       if (mark == 0 || write (STDOUT_FILENO, &mark, sizeof mark) != sizeof mark)
         _exit (1);
     }
 }
 
-/* The last mark that was told, when the pipe is at its end; what was told first is waited for by the caller. */
+/* The last mark that was told, when the pipe is at its end; what was told first is waited for by
+ * the caller. */
 static gint64
 last_told (int fd, gint64 first, guint *n)
 {
@@ -144,7 +157,9 @@ test_kill_marks (Fixture *f, gconstpointer data)
       g_autoptr (GArray) points = tf_ledger_points (ledger, NULL);
       gboolean found = FALSE;
       for (guint p = 0; p < points->len; p++)
-        found = found || (g_array_index (points, TfPoint, p).mark == last && !g_array_index (points, TfPoint, p).hint);
+        found = found
+                || (g_array_index (points, TfPoint, p).mark == last
+                    && !g_array_index (points, TfPoint, p).hint);
       g_assert_true (found);
     }
   g_test_message ("%u marks were told as saved", all);

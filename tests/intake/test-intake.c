@@ -17,9 +17,12 @@ static void
 test_list (Fixture *f, gconstpointer data)
 {
   g_autoptr (GError) error = NULL;
-  g_autofree char *deep = g_build_filename (f->frames, "deep", NULL), *one = g_build_filename (deep, "A.FTS", NULL);
-  g_autofree char *text = g_build_filename (deep, "a.txt", NULL), *ring = g_build_filename (deep, "ring", NULL);
-  g_autofree char *hidden = g_build_filename (deep, ".b.fits", NULL), *gone = g_build_filename (f->folder, "gone", NULL);
+  g_autofree char *deep = g_build_filename (f->frames, "deep", NULL),
+                  *one = g_build_filename (deep, "A.FTS", NULL);
+  g_autofree char *text = g_build_filename (deep, "a.txt", NULL),
+                  *ring = g_build_filename (deep, "ring", NULL);
+  g_autofree char *hidden = g_build_filename (deep, ".b.fits", NULL),
+                  *gone = g_build_filename (f->folder, "gone", NULL);
   g_mkdir (deep, 0755);
   g_file_set_contents (one, "x", 1, NULL);
   g_file_set_contents (text, "x", 1, NULL);
@@ -28,7 +31,8 @@ test_list (Fixture *f, gconstpointer data)
   char *paths[] = { f->frames, text, f->frames, one, gone, NULL };
   g_auto (GStrv) files = tf_intake_list (paths, &error);
   g_assert_no_error (error);
-  g_assert_cmpuint (g_strv_length (files), ==, f->n + 3); /* a named file is taken whatever it is called, there or not */
+  g_assert_cmpuint (g_strv_length (files), ==,
+                    f->n + 3); /* a named file is taken whatever it is called, there or not */
   g_assert_true (g_strv_contains ((const char *const *)files, one));
   g_assert_true (g_strv_contains ((const char *const *)files, text));
   for (guint k = 1; files[k] != NULL; k++)
@@ -57,7 +61,8 @@ test_fill_twice (Fixture *f, gconstpointer data)
   check_clean (ledger);
 }
 
-/* One thread and many give the same rows; so does a file that was moved, and one that was only touched. */
+/* One thread and many give the same rows; so does a file that was moved, and one that was only
+ * touched. */
 static void
 test_same_rows (Fixture *f, gconstpointer data)
 {
@@ -168,9 +173,15 @@ test_remeasure (Fixture *f, gconstpointer data)
   /* a mark whose measure is not what its outline holds */
   g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &(TfRowQuery){ .hints = TRUE }, NULL);
   TfRow *row = g_ptr_array_index (rows, 0);
-  g_autoptr (TfOutline) outline = tf_outline_deform (row->outline, 0.3, 0, 1.2, (double[3]){ 0 }, (double[3]){ 0 });
-  TfMarkDeed deed = { .frame = row->frame, .person = tf_ledger_person (ledger, "north", NULL), .hint = row->mark,
-                      .origin = TF_MARK_CHANGED, .outline = outline, .measure = &row->measure, .method = row->method };
+  g_autoptr (TfOutline) outline
+      = tf_outline_deform (row->outline, 0.3, 0, 1.2, (double[3]){ 0 }, (double[3]){ 0 });
+  TfMarkDeed deed = { .frame = row->frame,
+                      .person = tf_ledger_person (ledger, "north", NULL),
+                      .hint = row->mark,
+                      .origin = TF_MARK_CHANGED,
+                      .outline = outline,
+                      .measure = &row->measure,
+                      .method = row->method };
   deed.measure = &row->measure;
   row->measure.flux_unsigned_mx *= 1.001;
   g_assert_cmpint (tf_ledger_keep (ledger, &deed, NULL), !=, 0);
@@ -191,7 +202,8 @@ main (int argc, char **argv)
   FIXTURE_TEST ("/intake/list/folders-deep-each-file-once-in-name-order", test_list);
   FIXTURE_TEST ("/intake/fill/filling-twice-adds-nothing", test_fill_twice);
   FIXTURE_TEST ("/intake/fill/threads-and-places-make-no-difference", test_same_rows);
-  FIXTURE_TEST ("/intake/fill/bad-files-are-told-and-refused-frames-recorded", test_bad_and_refused);
+  FIXTURE_TEST ("/intake/fill/bad-files-are-told-and-refused-frames-recorded",
+                test_bad_and_refused);
   FIXTURE_TEST ("/intake/fill/stopped-it-goes-on-from-there", test_stop_and_go_on);
   FIXTURE_TEST ("/intake/fill/hints-may-come-later", test_frames_then_hints);
   FIXTURE_TEST ("/intake/remeasure/what-was-changed-is-found", test_remeasure);

@@ -91,7 +91,8 @@ test_hint_is_judged (Fixture *f, gconstpointer data)
   g_autoptr (GError) error = NULL;
   g_autoptr (GPtrArray) hints = fixture_hints (1);
   gint64 person = north (f), frame = fixture_frame (f->ledger, 1);
-  g_assert_true (tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
+  g_assert_true (
+      tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
   fixture_count (f->ledger, 0, 3);
   gint64 first = fixture_hint (f->ledger, 0), second = fixture_hint (f->ledger, 1);
   gint64 mark = fixture_keep (f->ledger, frame, person, first, 0, 10);
@@ -105,9 +106,11 @@ test_hint_is_judged (Fixture *f, gconstpointer data)
   g_assert_cmpuint (row->n_hints, ==, 1);
   g_assert_cmpuint (row->n_marks, ==, 1);
   g_assert_false (row->done);
-  g_autoptr (GPtrArray) all = tf_ledger_rows (f->ledger, &(TfRowQuery){ .hints = TRUE, .judged_hints = TRUE }, &error);
+  g_autoptr (GPtrArray) all
+      = tf_ledger_rows (f->ledger, &(TfRowQuery){ .hints = TRUE, .judged_hints = TRUE }, &error);
   g_assert_cmpuint (all->len, ==, 3);
-  g_autoptr (GPtrArray) bare = tf_ledger_rows (f->ledger, &(TfRowQuery){ .marks = TRUE, .no_outlines = TRUE }, &error);
+  g_autoptr (GPtrArray) bare
+      = tf_ledger_rows (f->ledger, &(TfRowQuery){ .marks = TRUE, .no_outlines = TRUE }, &error);
   g_assert_cmpuint (bare->len, ==, 1);
   g_assert_null (((TfRow *)g_ptr_array_index (bare, 0))->outline);
   g_assert_true (tf_ledger_withdraw (f->ledger, mark, person, &error));
@@ -118,7 +121,8 @@ test_hint_is_judged (Fixture *f, gconstpointer data)
 static void
 test_follow_takes_the_place (Fixture *f, gconstpointer data)
 {
-  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL), frame = fixture_frame (f->ledger, 0);
+  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL),
+         frame = fixture_frame (f->ledger, 0);
   gint64 one = fixture_keep (f->ledger, frame, person, 0, 0, 1);
   gint64 two = fixture_keep (f->ledger, frame, person, 0, one, 2);
   fixture_count (f->ledger, 1, 0);
@@ -137,8 +141,10 @@ test_follow_takes_the_place (Fixture *f, gconstpointer data)
 static void
 test_refusals (Fixture *f, gconstpointer data)
 {
-  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL), frame = fixture_frame (f->ledger, 0);
-  gint64 mark = fixture_keep (f->ledger, frame, person, 0, 0, 1), far = fixture_frame (f->ledger, 1);
+  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL),
+         frame = fixture_frame (f->ledger, 0);
+  gint64 mark = fixture_keep (f->ledger, frame, person, 0, 0, 1),
+         far = fixture_frame (f->ledger, 1);
   GError *error = NULL;
   g_assert_false (tf_ledger_withdraw (f->ledger, mark, other, &error));
   g_assert_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE);
@@ -149,7 +155,12 @@ test_refusals (Fixture *f, gconstpointer data)
   g_autoptr (TfOutline) outline = fixture_outline (2);
   g_auto (TfMeasure) measure = { 0 };
   fixture_measure (&measure, 2);
-  TfMarkDeed deed = { .frame = far, .person = person, .follows = mark, .outline = outline, .measure = &measure, .method = "m" };
+  TfMarkDeed deed = { .frame = far,
+                      .person = person,
+                      .follows = mark,
+                      .outline = outline,
+                      .measure = &measure,
+                      .method = "m" };
   g_assert_cmpint (tf_ledger_keep (f->ledger, &deed, &error), ==, 0);
   g_assert_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE);
   g_clear_error (&error);
@@ -178,10 +189,13 @@ static void
 test_notes_and_classes (Fixture *f, gconstpointer data)
 {
   g_autoptr (GError) error = NULL;
-  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL), frame = fixture_frame (f->ledger, 0);
-  gint64 mark = fixture_keep (f->ledger, frame, person, 0, 0, 1), region = fixture_region (f->ledger, mark);
+  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL),
+         frame = fixture_frame (f->ledger, 0);
+  gint64 mark = fixture_keep (f->ledger, frame, person, 0, 0, 1),
+         region = fixture_region (f->ledger, mark);
   g_assert_true (tf_ledger_set_note (f->ledger, region, person, "watch \"it\"\n", &error));
-  g_assert_true (tf_ledger_set_class (f->ledger, region, frame, person, "βγ", "magnetogram", &error));
+  g_assert_true (
+      tf_ledger_set_class (f->ledger, region, frame, person, "βγ", "magnetogram", &error));
   check_row_text (f, mark, "watch \"it\"\n", "βγ");
   g_assert_true (tf_ledger_set_class (f->ledger, region, frame, other, "β", "magnetogram", &error));
   check_row_text (f, mark, "watch \"it\"\n", "βγ"); /* the mark's own person's */
@@ -196,7 +210,10 @@ test_notes_and_classes (Fixture *f, gconstpointer data)
   fixture_check (f->ledger, "");
 }
 
-enum { DEEDS = 24 };
+enum
+{
+  DEEDS = 24
+};
 
 /* Deeds of all kinds, all undone, all done again; at every step what was there before is there. */
 static void
@@ -205,7 +222,8 @@ test_undo_all_redo_all (Fixture *f, gconstpointer data)
   g_autoptr (GError) error = NULL;
   g_autoptr (GPtrArray) hints = fixture_hints (1);
   gint64 person = north (f), frame = fixture_frame (f->ledger, 1), mark = 0;
-  g_assert_true (tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
+  g_assert_true (
+      tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
   guint marks[DEEDS + 1] = { 0 }, open[DEEDS + 1] = { 3 };
   gint64 first = fixture_hint (f->ledger, 0), second = fixture_hint (f->ledger, 1);
   for (int k = 0; k < DEEDS; k++)
@@ -223,7 +241,8 @@ test_undo_all_redo_all (Fixture *f, gconstpointer data)
           open[k + 1]--;
         }
       else if (k % 5 == 2)
-        g_assert_true (tf_ledger_set_note (f->ledger, fixture_region (f->ledger, mark), person, "note", &error));
+        g_assert_true (tf_ledger_set_note (f->ledger, fixture_region (f->ledger, mark), person,
+                                           "note", &error));
       else if (k % 5 == 3)
         mark = fixture_keep (f->ledger, frame, person, 0, mark, k);
       else if (k % 5 == 4)
@@ -242,7 +261,8 @@ test_undo_all_redo_all (Fixture *f, gconstpointer data)
           open[k + 1] = open[k];
         }
       else
-        g_assert_true (tf_ledger_set_class (f->ledger, fixture_region (f->ledger, mark), frame, person, "β", "m", &error));
+        g_assert_true (tf_ledger_set_class (f->ledger, fixture_region (f->ledger, mark), frame,
+                                            person, "β", "m", &error));
       fixture_count (f->ledger, marks[k + 1], open[k + 1]);
     }
   g_assert_false (tf_ledger_can_redo (f->ledger, person));
@@ -297,7 +317,8 @@ static void
 test_undo_is_one_persons (Fixture *f, gconstpointer data)
 {
   g_autoptr (GError) error = NULL;
-  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL), frame = fixture_frame (f->ledger, 0);
+  gint64 person = north (f), other = tf_ledger_person (f->ledger, "south", NULL),
+         frame = fixture_frame (f->ledger, 0);
   gint64 mine = fixture_keep (f->ledger, frame, person, 0, 0, 1);
   fixture_keep (f->ledger, frame, other, 0, 0, 2);
   g_assert_true (tf_ledger_undo (f->ledger, other, NULL, &error));
@@ -317,7 +338,8 @@ test_journal (Fixture *f, gconstpointer data)
   g_autoptr (GPtrArray) entries = tf_ledger_journal (f->ledger, 3, &error);
   g_assert_no_error (error);
   g_assert_cmpuint (entries->len, ==, 3);
-  const TfJournalEntry *undo = g_ptr_array_index (entries, 0), *keep = g_ptr_array_index (entries, 1);
+  const TfJournalEntry *undo = g_ptr_array_index (entries, 0),
+                       *keep = g_ptr_array_index (entries, 1);
   g_assert_cmpstr (undo->kind, ==, "undo");
   g_assert_cmpstr (keep->kind, ==, "keep");
   g_assert_cmpstr (keep->person, ==, "north");
@@ -348,9 +370,11 @@ add_acts_tests (void)
   FIXTURE_TEST ("/ledger/acts/a-kept-outline-is-a-region-with-a-number", test_keep_new_region);
   FIXTURE_TEST ("/ledger/acts/a-measure-comes-back-bit-for-bit", test_measure_comes_back);
   FIXTURE_TEST ("/ledger/acts/a-judged-hint-is-no-longer-open", test_hint_is_judged);
-  FIXTURE_TEST ("/ledger/acts/a-mark-that-follows-takes-the-place-of-ones-own", test_follow_takes_the_place);
+  FIXTURE_TEST ("/ledger/acts/a-mark-that-follows-takes-the-place-of-ones-own",
+                test_follow_takes_the_place);
   FIXTURE_TEST ("/ledger/acts/deeds-that-do-not-fit-are-refused-whole", test_refusals);
-  FIXTURE_TEST ("/ledger/acts/notes-and-classes-are-the-last-one-that-stands", test_notes_and_classes);
+  FIXTURE_TEST ("/ledger/acts/notes-and-classes-are-the-last-one-that-stands",
+                test_notes_and_classes);
   FIXTURE_TEST ("/ledger/acts/all-deeds-are-undone-and-done-again", test_undo_all_redo_all);
   FIXTURE_TEST ("/ledger/acts/a-new-deed-ends-what-could-be-redone", test_new_deed_ends_redo);
   FIXTURE_TEST ("/ledger/acts/undo-is-one-persons-own", test_undo_is_one_persons);

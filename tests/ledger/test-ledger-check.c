@@ -14,19 +14,23 @@ set_up_full (Fixture *f, gconstpointer data)
 {
   g_autoptr (GError) error = NULL;
   fixture_set_up (f, data);
-  gint64 person = tf_ledger_person (f->ledger, "north", &error), other = tf_ledger_person (f->ledger, "south", &error);
+  gint64 person = tf_ledger_person (f->ledger, "north", &error),
+         other = tf_ledger_person (f->ledger, "south", &error);
   for (int n = 1; n <= 2; n++)
     {
       g_autoptr (GPtrArray) hints = fixture_hints (n);
       gint64 frame = fixture_frame (f->ledger, n);
-      g_assert_true (tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
+      g_assert_true (
+          tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
     }
   gint64 one = fixture_keep (f->ledger, 1, person, fixture_hint (f->ledger, 0), 0, 10);
   fixture_keep (f->ledger, 1, other, 0, 0, 11);
   fixture_keep (f->ledger, 1, person, 0, one, 12);
   g_assert_true (tf_ledger_drop_hint (f->ledger, fixture_hint (f->ledger, 1), person, &error));
-  g_assert_true (tf_ledger_set_class (f->ledger, fixture_region (f->ledger, one), 1, person, "β", "magnetogram", &error));
-  g_assert_true (tf_ledger_set_note (f->ledger, fixture_region (f->ledger, one), other, "look again", &error));
+  g_assert_true (tf_ledger_set_class (f->ledger, fixture_region (f->ledger, one), 1, person, "β",
+                                      "magnetogram", &error));
+  g_assert_true (
+      tf_ledger_set_note (f->ledger, fixture_region (f->ledger, one), other, "look again", &error));
   fixture_keep (f->ledger, 2, other, 0, 0, 13);
   g_assert_true (tf_ledger_undo (f->ledger, other, NULL, &error));
   g_assert_no_error (error);
@@ -40,20 +44,32 @@ typedef struct
 } Tampering;
 
 static const Tampering tamperings[] = {
-  { "a-byte-in-a-body", "UPDATE act SET body = CAST (replace (CAST (body AS TEXT), 'look again', 'look agaim') AS BLOB)",
+  { "a-byte-in-a-body",
+    "UPDATE act SET body = CAST (replace (CAST (body AS TEXT), 'look again', 'look agaim') AS "
+    "BLOB)",
     "check-act-hash" },
-  { "a-byte-behind-a-zero-in-a-body", "UPDATE act SET body = CAST (body || x'00' || 'x' AS BLOB) WHERE seq = 4", "check-act-hash" },
-  { "a-kind", "UPDATE act SET kind = 'withdraw' WHERE kind = 'keep' AND seq = (SELECT min (seq) FROM act WHERE kind = 'keep')",
+  { "a-byte-behind-a-zero-in-a-body",
+    "UPDATE act SET body = CAST (body || x'00' || 'x' AS BLOB) WHERE seq = 4", "check-act-hash" },
+  { "a-kind",
+    "UPDATE act SET kind = 'withdraw' WHERE kind = 'keep' AND seq = (SELECT min (seq) FROM act "
+    "WHERE kind = 'keep')",
     "check-act-hash" },
   { "a-time", "UPDATE act SET wall = wall + 1 WHERE seq = 3", "check-act-hash" },
   { "an-act-taken-out", "DELETE FROM after; DELETE FROM act WHERE seq = 5", "check-act-gap" },
-  { "the-last-act-taken-out", "DELETE FROM after WHERE seq = (SELECT max (seq) FROM act); DELETE FROM act WHERE seq = "
-                              "(SELECT max (seq) FROM act)", "check-act-gap" },
-  { "two-acts-exchanged", "UPDATE act SET seq = 99 WHERE seq = 4; UPDATE act SET seq = 4 WHERE seq = 5; UPDATE act SET seq = 5 "
-                          "WHERE seq = 99", "check-act-chain" },
-  { "what-an-act-replaces", "DELETE FROM after WHERE seq = (SELECT max (seq) FROM after)", "check-act-hash" },
+  { "the-last-act-taken-out",
+    "DELETE FROM after WHERE seq = (SELECT max (seq) FROM act); DELETE FROM act WHERE seq = "
+    "(SELECT max (seq) FROM act)",
+    "check-act-gap" },
+  { "two-acts-exchanged",
+    "UPDATE act SET seq = 99 WHERE seq = 4; UPDATE act SET seq = 4 WHERE seq = 5; UPDATE act SET "
+    "seq = 5 "
+    "WHERE seq = 99",
+    "check-act-chain" },
+  { "what-an-act-replaces", "DELETE FROM after WHERE seq = (SELECT max (seq) FROM after)",
+    "check-act-hash" },
   { "a-mark-alive", "UPDATE mark SET live = 1 WHERE live = 0", "check-projection" },
-  { "a-mark-of-another-person", "UPDATE mark SET person = 3 - person WHERE id = 1", "check-projection" },
+  { "a-mark-of-another-person", "UPDATE mark SET person = 3 - person WHERE id = 1",
+    "check-projection" },
   { "a-mark-gone", "PRAGMA foreign_keys = OFF; DELETE FROM mark WHERE id = 3", "check-projection" },
   { "a-label", "UPDATE mark SET label = 'two' WHERE id = 2", "check-projection" },
   { "an-outline", "UPDATE mark SET outline = replace (outline, '21', '22')", "check-projection" },
@@ -65,15 +81,23 @@ static const Tampering tamperings[] = {
   { "a-name", "UPDATE person SET name = 'west' WHERE id = 1", "check-projection" },
   { "a-point", "UPDATE point SET flux_mx = flux_mx * 2 WHERE mark = 2", "check-points" },
   { "a-point-gone", "DELETE FROM point WHERE hint = 1 AND mark = 5", "check-points" },
-  { "a-point-more", "INSERT INTO point SELECT hint, 999, frame, region, time, year, lat_deg, flux_mx, tilt_deg, mu, cmd_deg,"
-                    " separation_deg, imbalance, leading, leading_sure, unipolar, straddles, witnesses_differ FROM point LIMIT 1",
+  { "a-point-more",
+    "INSERT INTO point SELECT hint, 999, frame, region, time, year, lat_deg, flux_mx, tilt_deg, "
+    "mu, cmd_deg,"
+    " separation_deg, imbalance, leading, leading_sure, unipolar, straddles, witnesses_differ FROM "
+    "point LIMIT 1",
     "check-points" },
-  { "a-measure", "UPDATE measure SET axis_tilt_deg = -axis_tilt_deg WHERE id = 2", "check-machine-row" },
-  { "a-hint's-outline", "UPDATE hint SET outline = replace (outline, '2', '3') WHERE id = 1", "check-machine-row" },
-  { "a-frame's-time", "UPDATE frame SET time_text = '2001-01-01T00:00:00Z' WHERE id = 1", "check-machine-row" },
-  { "a-frame-gone", "PRAGMA foreign_keys = OFF; DELETE FROM frame WHERE id = 2", "check-reference" },
+  { "a-measure", "UPDATE measure SET axis_tilt_deg = -axis_tilt_deg WHERE id = 2",
+    "check-machine-row" },
+  { "a-hint's-outline", "UPDATE hint SET outline = replace (outline, '2', '3') WHERE id = 1",
+    "check-machine-row" },
+  { "a-frame's-time", "UPDATE frame SET time_text = '2001-01-01T00:00:00Z' WHERE id = 1",
+    "check-machine-row" },
+  { "a-frame-gone", "PRAGMA foreign_keys = OFF; DELETE FROM frame WHERE id = 2",
+    "check-reference" },
   { "an-index-gone", "DROP INDEX act_subject", "check-schema" },
-  { "a-view-changed", "DROP VIEW regions; CREATE VIEW regions AS SELECT 1 AS region", "check-schema" },
+  { "a-view-changed", "DROP VIEW regions; CREATE VIEW regions AS SELECT 1 AS region",
+    "check-schema" },
 };
 
 static void
@@ -132,6 +156,8 @@ add_check_tests (void)
       g_autofree char *path = g_strdup_printf ("/ledger/check/finds/%s", tamperings[k].name);
       g_test_add (path, Fixture, &tamperings[k], set_up_full, test_tampering, fixture_tear_down);
     }
-  g_test_add ("/ledger/check/finds/overwritten-pages", Fixture, NULL, set_up_full, test_damaged_file, fixture_tear_down);
-  g_test_add ("/ledger/check/changes-nothing", Fixture, NULL, set_up_full, test_check_changes_nothing, fixture_tear_down);
+  g_test_add ("/ledger/check/finds/overwritten-pages", Fixture, NULL, set_up_full,
+              test_damaged_file, fixture_tear_down);
+  g_test_add ("/ledger/check/changes-nothing", Fixture, NULL, set_up_full,
+              test_check_changes_nothing, fixture_tear_down);
 }

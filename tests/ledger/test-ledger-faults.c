@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Locks, full disks, folders that cannot be written, two processes at once. Children are forked before the test has made any thread. */
+/* Locks, full disks, folders that cannot be written, two processes at once. Children are forked
+ * before the test has made any thread. */
 
 #include "test-ledger.h"
 
@@ -20,7 +21,8 @@
 static void
 keep_one (TfLedger *ledger, int n)
 {
-  fixture_keep (ledger, fixture_frame (ledger, 0), tf_ledger_person (ledger, "north", NULL), 0, 0, n);
+  fixture_keep (ledger, fixture_frame (ledger, 0), tf_ledger_person (ledger, "north", NULL), 0, 0,
+                n);
 }
 
 /* Runs @func in a child; its return is the exit code. 77 stands for "cannot be tried here". */
@@ -47,8 +49,12 @@ finish_child (int code, const char *why_not)
   return code == 0;
 }
 
-/* -- read only --------------------------------------------------------------------------------------- */
-enum { NOBODY = 65534 };
+/* -- read only
+ * --------------------------------------------------------------------------------------- */
+enum
+{
+  NOBODY = 65534
+};
 
 /* Root may write everywhere: the child becomes nobody. */
 static int
@@ -66,7 +72,8 @@ open_as_nobody (Fixture *f)
   g_autoptr (TfNotes) findings = tf_notes_new ();
   if (points == NULL || points->len != 1)
     return 3;
-  if (tf_ledger_person (ledger, "south", &error) != 0 || !g_error_matches (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_READ_ONLY))
+  if (tf_ledger_person (ledger, "south", &error) != 0
+      || !g_error_matches (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_READ_ONLY))
     return 4;
   g_clear_error (&error);
   if (!tf_ledger_check (ledger, findings, &error))
@@ -115,7 +122,8 @@ test_no_state (Fixture *f, gconstpointer data)
   fixture_check (f->ledger, "");
 }
 
-/* -- locks ------------------------------------------------------------------------------------------- */
+/* -- locks
+ * ------------------------------------------------------------------------------------------- */
 static sqlite3 *
 hold_lock (const char *path)
 {
@@ -162,8 +170,12 @@ test_lock_waited_for (Fixture *f, gconstpointer data)
   fixture_count (f->ledger, 1, 0);
 }
 
-/* -- two processes ------------------------------------------------------------------------------------ */
-enum { EACH = 15 };
+/* -- two processes
+ * ------------------------------------------------------------------------------------ */
+enum
+{
+  EACH = 15
+};
 
 static int
 keep_many (Fixture *f)
@@ -195,11 +207,13 @@ test_two_processes (Fixture *f, gconstpointer data)
   fixture_reopen (f);
   fixture_count (f->ledger, 2 * EACH, 0);
   fixture_check (f->ledger, "");
-  g_autofree char *numbers = fixture_sql_text (f->path, "SELECT count (DISTINCT number) FROM region");
+  g_autofree char *numbers
+      = fixture_sql_text (f->path, "SELECT count (DISTINCT number) FROM region");
   g_assert_cmpstr (numbers, ==, "30");
 }
 
-/* -- full disk ---------------------------------------------------------------------------------------- */
+/* -- full disk
+ * ---------------------------------------------------------------------------------------- */
 static gint64
 count_acts (const char *path)
 {
@@ -207,7 +221,8 @@ count_acts (const char *path)
   return g_ascii_strtoll (text, NULL, 10);
 }
 
-/* Keeps marks until there is no room: an error of the right kind, and the ledger as it was before the last deed. */
+/* Keeps marks until there is no room: an error of the right kind, and the ledger as it was before
+ * the last deed. */
 static int
 keep_until_full (Fixture *f)
 {
@@ -224,7 +239,11 @@ keep_until_full (Fixture *f)
       g_autoptr (TfOutline) outline = fixture_outline (k);
       g_auto (TfMeasure) measure = { 0 };
       fixture_measure (&measure, k);
-      TfMarkDeed deed = { .frame = frame, .person = person, .origin = TF_MARK_DRAWN, .outline = outline, .measure = &measure,
+      TfMarkDeed deed = { .frame = frame,
+                          .person = person,
+                          .origin = TF_MARK_DRAWN,
+                          .outline = outline,
+                          .measure = &measure,
                           .method = "m" };
       kept += tf_ledger_keep (ledger, &deed, &error) != 0;
     }
@@ -298,7 +317,8 @@ test_full_disk (Fixture *f, gconstpointer data)
 static int
 no_room_for_backup (Fixture *f)
 {
-  g_autofree char *disk = g_build_filename (f->folder, "disk", NULL), *path = g_build_filename (disk, "old.ledger", NULL);
+  g_autofree char *disk = g_build_filename (f->folder, "disk", NULL),
+                  *path = g_build_filename (disk, "old.ledger", NULL);
   g_mkdir (disk, 0755);
   if (unshare (CLONE_NEWNS) != 0 || mount (NULL, "/", NULL, MS_REC | MS_PRIVATE, NULL) != 0
       || mount ("tmpfs", disk, "tmpfs", 0, "size=1m") != 0)

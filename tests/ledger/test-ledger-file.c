@@ -12,7 +12,8 @@
 static void
 keep_one (Fixture *f, TfLedger *ledger, int n)
 {
-  fixture_keep (ledger, fixture_frame (ledger, 0), tf_ledger_person (ledger, "north", NULL), 0, 0, n);
+  fixture_keep (ledger, fixture_frame (ledger, 0), tf_ledger_person (ledger, "north", NULL), 0, 0,
+                n);
 }
 
 static const char *
@@ -50,23 +51,29 @@ test_create (Fixture *f, gconstpointer data)
   g_assert_cmpstr (tf_ledger_get_path (ledger), ==, other);
   g_assert_null (tf_ledger_get_read_only (ledger));
   fixture_check (ledger, "");
-  g_autofree char *modes = fixture_sql_text (other, "SELECT (SELECT journal_mode FROM pragma_journal_mode) || ' ' || (SELECT"
-                                                    " application_id FROM pragma_application_id) || ' ' || (SELECT user_version"
-                                                    " FROM pragma_user_version)");
+  g_autofree char *modes = fixture_sql_text (
+      other, "SELECT (SELECT journal_mode FROM pragma_journal_mode) || ' ' || (SELECT"
+             " application_id FROM pragma_application_id) || ' ' || (SELECT user_version"
+             " FROM pragma_user_version)");
   g_assert_cmpstr (modes, ==, "wal 1413901412 1");
-  g_autofree char *loose = fixture_sql_text (other, "SELECT count (*) FROM pragma_table_list WHERE schema = 'main' AND type ="
-                                                    " 'table' AND strict = 0 AND name NOT LIKE 'sqlite%'");
+  g_autofree char *loose = fixture_sql_text (
+      other, "SELECT count (*) FROM pragma_table_list WHERE schema = 'main' AND type ="
+             " 'table' AND strict = 0 AND name NOT LIKE 'sqlite%'");
   g_assert_cmpstr (loose, ==, "0");
 }
 
 static void
 test_not_a_ledger (Fixture *f, gconstpointer data)
 {
-  g_autofree char *text = g_build_filename (f->folder, "notes.txt", NULL), *other = g_build_filename (f->folder, "x.db", NULL);
-  g_autofree char *gone = g_build_filename (f->folder, "gone.ledger", NULL), *empty = g_build_filename (f->folder, "e", NULL);
+  g_autofree char *text = g_build_filename (f->folder, "notes.txt", NULL),
+                  *other = g_build_filename (f->folder, "x.db", NULL);
+  g_autofree char *gone = g_build_filename (f->folder, "gone.ledger", NULL),
+                  *empty = g_build_filename (f->folder, "e", NULL);
   g_autofree char *before = NULL, *after = NULL;
   gsize n, m;
-  g_file_set_contents (text, "Not a database at all, but long enough to have the sixteen bytes of a header.", -1, NULL);
+  g_file_set_contents (
+      text, "Not a database at all, but long enough to have the sixteen bytes of a header.", -1,
+      NULL);
   g_file_set_contents (empty, "", 0, NULL);
   fixture_sql (other, "CREATE TABLE t (a)");
   g_file_get_contents (other, &before, &n, NULL);
@@ -86,19 +93,23 @@ find_backup (Fixture *f)
   g_autoptr (GDir) dir = g_dir_open (f->folder, 0, NULL);
   const char *name;
   while ((name = g_dir_read_name (dir)) != NULL)
-    if (g_str_has_prefix (name, "old.version-0.2013-10-12T06-00-00Z") && g_str_has_suffix (name, ".ledger"))
+    if (g_str_has_prefix (name, "old.version-0.2013-10-12T06-00-00Z")
+        && g_str_has_suffix (name, ".ledger"))
       return g_build_filename (f->folder, name, NULL);
   return NULL;
 }
 
-/* Version 0: the stamp and none of our tables yet. What is in it stays, and the file as it was lies beside it. */
+/* Version 0: the stamp and none of our tables yet. What is in it stays, and the file as it was
+ * lies beside it. */
 static void
 test_migration (Fixture *f, gconstpointer data)
 {
-  static const char kept[] = "SELECT (SELECT a FROM keepsake) || ' ' || (SELECT user_version FROM pragma_user_version)";
+  static const char kept[]
+      = "SELECT (SELECT a FROM keepsake) || ' ' || (SELECT user_version FROM pragma_user_version)";
   g_autoptr (GError) error = NULL;
   g_autofree char *path = g_build_filename (f->folder, "old.ledger", NULL);
-  fixture_sql (path, "PRAGMA application_id = 1413901412; CREATE TABLE keepsake (a); INSERT INTO keepsake VALUES (42)");
+  fixture_sql (path, "PRAGMA application_id = 1413901412; CREATE TABLE keepsake (a); INSERT INTO "
+                     "keepsake VALUES (42)");
   g_autoptr (TfLedger) ledger = fixture_open (f, path, &error);
   g_assert_no_error (error);
   g_assert_cmpstr (notice (ledger), ==, "ledger-migrated");
@@ -125,7 +136,8 @@ test_newer (Fixture *f, gconstpointer data)
   g_clear_pointer (&f->ledger, tf_ledger_close);
   fixture_sql (f->path, "PRAGMA user_version = 7");
   fixture_reopen (f);
-  g_assert_cmpstr (tf_note_get_code (tf_ledger_get_read_only (f->ledger)), ==, "ledger-newer-version");
+  g_assert_cmpstr (tf_note_get_code (tf_ledger_get_read_only (f->ledger)), ==,
+                   "ledger-newer-version");
   fixture_count (f->ledger, 1, 0);
   g_assert_false (tf_ledger_undo (f->ledger, person, NULL, &error));
   g_assert_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_READ_ONLY);
@@ -192,7 +204,8 @@ test_restored (Fixture *f, gconstpointer data)
   check_replicas (f, "3 3");
 }
 
-/* A copy beside the original; both are worked in, in turns. No act of one has the name of an act of the other. */
+/* A copy beside the original; both are worked in, in turns. No act of one has the name of an act
+ * of the other. */
 static void
 test_copied (Fixture *f, gconstpointer data)
 {
@@ -231,7 +244,8 @@ test_moved (Fixture *f, gconstpointer data)
   g_assert_cmpstr (counts, ==, "4");
 }
 
-/* Another user, or another machine: no state of this ledger's replicas here, or one that another machine wrote. */
+/* Another user, or another machine: no state of this ledger's replicas here, or one that another
+ * machine wrote. */
 static void
 test_elsewhere (Fixture *f, gconstpointer data)
 {
@@ -291,7 +305,8 @@ test_clock_back (Fixture *f, gconstpointer data)
   g_assert_cmpstr (notice (f->ledger), ==, "clock-set-back");
   keep_one (f, f->ledger, 2);
   g_autoptr (GPtrArray) entries = tf_ledger_journal (f->ledger, 2, NULL);
-  const TfJournalEntry *newest = g_ptr_array_index (entries, 0), *older = g_ptr_array_index (entries, 1);
+  const TfJournalEntry *newest = g_ptr_array_index (entries, 0),
+                       *older = g_ptr_array_index (entries, 1);
   g_assert_cmpint (newest->seq, >, older->seq); /* order is by clock of acts, not of the machine */
   tf_check_near ("hours back", (older->wall.s - newest->wall.s) / 3600, 3, 1e-6);
   fixture_check (f->ledger, "");

@@ -16,7 +16,12 @@ fixture_now (gpointer data)
 TfLedger *
 fixture_open (Fixture *f, const char *path, GError **error)
 {
-  TfLedgerHow how = { .create = TRUE, .letter = 'T', .state_dir = f->state, .busy_ms = 300, .now = fixture_now, .now_data = f };
+  TfLedgerHow how = { .create = TRUE,
+                      .letter = 'T',
+                      .state_dir = f->state,
+                      .busy_ms = 300,
+                      .now = fixture_now,
+                      .now_data = f };
   return tf_ledger_open_how (path, &how, error);
 }
 
@@ -72,7 +77,8 @@ fixture_info (int n)
   info.time = tf_time_add (tf_time_read ("2013-10-12T06:00:00Z"), n * 21600.0);
   info.time_span_s = 720;
   TfObserver observer = { 1.4929e11, 5.9, 0.0, 211.25, TF_OBSERVER_HEADER };
-  g_assert_true (tf_geometry_make_disk (&info.geometry, 512, 512, 256.5, 256.5, 4.0, 12.5, &observer, 696.0));
+  g_assert_true (
+      tf_geometry_make_disk (&info.geometry, 512, 512, 256.5, 256.5, 4.0, 12.5, &observer, 696.0));
   info.instrument = (char *)"Brindle Head";
   info.unit = (char *)"G";
   info.to_gauss = 1;
@@ -112,10 +118,22 @@ fixture_measure (TfMeasure *measure, int n)
   measure->floor_gauss = 57.25;
   measure->noise_gauss = 9.5;
   measure->scale = NAN;
-  measure->positive = (TfPole){ .flux_mx = 1.25e22 + n, .flux_sigma_mx = 2e20, .lon_deg = -11.3, .carrington_lon_deg = 199.9,
-                                .lat_deg = 18.4, .place_sigma_deg = 0.1, .rms_radius_deg = 1.5, .pixels = 411 };
-  measure->negative = (TfPole){ .flux_mx = 1.1e22, .flux_sigma_mx = 2e20, .lon_deg = -6.1, .carrington_lon_deg = 205.2,
-                                .lat_deg = 17.2, .place_sigma_deg = 0.1, .rms_radius_deg = 1.2, .pixels = 380 };
+  measure->positive = (TfPole){ .flux_mx = 1.25e22 + n,
+                                .flux_sigma_mx = 2e20,
+                                .lon_deg = -11.3,
+                                .carrington_lon_deg = 199.9,
+                                .lat_deg = 18.4,
+                                .place_sigma_deg = 0.1,
+                                .rms_radius_deg = 1.5,
+                                .pixels = 411 };
+  measure->negative = (TfPole){ .flux_mx = 1.1e22,
+                                .flux_sigma_mx = 2e20,
+                                .lon_deg = -6.1,
+                                .carrington_lon_deg = 205.2,
+                                .lat_deg = 17.2,
+                                .place_sigma_deg = 0.1,
+                                .rms_radius_deg = 1.2,
+                                .pixels = 380 };
   measure->leading_polarity = -1;
   measure->leading_sure = TRUE;
   measure->witnesses[0] = measure->witnesses[1] = -1;
@@ -170,9 +188,15 @@ fixture_keep (TfLedger *ledger, gint64 frame, gint64 person, gint64 hint, gint64
   g_autoptr (TfOutline) outline = fixture_outline (n);
   g_auto (TfMeasure) measure = { 0 };
   fixture_measure (&measure, n);
-  TfMarkDeed deed = { .frame = frame, .person = person, .hint = hint, .follows = follows,
-                      .origin = hint != 0 ? TF_MARK_KEPT : TF_MARK_DRAWN, .outline = outline, .measure = &measure,
-                      .method = "flux-centroid/1 floor-kind=even", .label = "one" };
+  TfMarkDeed deed = { .frame = frame,
+                      .person = person,
+                      .hint = hint,
+                      .follows = follows,
+                      .origin = hint != 0 ? TF_MARK_KEPT : TF_MARK_DRAWN,
+                      .outline = outline,
+                      .measure = &measure,
+                      .method = "flux-centroid/1 floor-kind=even",
+                      .label = "one" };
   gint64 mark = tf_ledger_keep (ledger, &deed, &error);
   g_assert_no_error (error);
   g_assert_cmpint (mark, >, 0);
@@ -183,7 +207,8 @@ void
 fixture_count (TfLedger *ledger, guint marks, guint hints)
 {
   g_autoptr (GError) error = NULL;
-  g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE }, &error);
+  g_autoptr (GPtrArray) rows
+      = tf_ledger_rows (ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE }, &error);
   g_assert_no_error (error);
   g_autoptr (GArray) points = tf_ledger_points (ledger, &error);
   g_assert_no_error (error);

@@ -24,7 +24,8 @@ add_file (Fixture *f, const char *path, const char *checksum)
 static void
 test_frame_once (Fixture *f, gconstpointer data)
 {
-  g_autofree char *one = g_build_filename (f->folder, "one.fits", NULL), *two = g_build_filename (f->folder, "two.fits", NULL);
+  g_autofree char *one = g_build_filename (f->folder, "one.fits", NULL),
+                  *two = g_build_filename (f->folder, "two.fits", NULL);
   g_file_set_contents (one, "first", -1, NULL);
   g_file_set_contents (two, "first", -1, NULL);
   gint64 id = add_file (f, one, SUM_A);
@@ -65,7 +66,8 @@ test_info_comes_back (Fixture *f, gconstpointer data)
   tf_check_nan ("noise", row->noise_gauss);
   g_assert_nonnull (row->refusal);
   g_assert_cmpstr (tf_note_get_code (info->refusal), ==, "ledger-copied");
-  tf_check_near ("a caution's number", tf_note_get_number (tf_notes_find (info->cautions, "clock-set-back"), 1), 2.5, 0);
+  tf_check_near ("a caution's number",
+                 tf_note_get_number (tf_notes_find (info->cautions, "clock-set-back"), 1), 2.5, 0);
   g_assert_cmpint (info->kind, ==, TF_KIND_DISK);
   g_assert_cmpint (info->field, ==, TF_FIELD_LOS);
   g_assert_cmpstr (info->time_source, ==, "T_OBS");
@@ -103,13 +105,16 @@ test_hints_once (Fixture *f, gconstpointer data)
   g_assert_false (tf_ledger_has_hints (f->ledger, frame, "plain/1"));
   for (int k = 0; k < 2; k++)
     {
-      g_assert_true (tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
+      g_assert_true (
+          tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", &error));
       fixture_count (f->ledger, 0, 3);
     }
   g_assert_true (tf_ledger_has_hints (f->ledger, frame, "plain/1"));
-  g_assert_true (tf_ledger_add_hints (f->ledger, quiet, "plain/1", none, "flux-centroid/1", &error));
+  g_assert_true (
+      tf_ledger_add_hints (f->ledger, quiet, "plain/1", none, "flux-centroid/1", &error));
   g_assert_true (tf_ledger_has_hints (f->ledger, quiet, "plain/1"));
-  g_autoptr (GPtrArray) rows = tf_ledger_rows (f->ledger, &(TfRowQuery){ .hints = TRUE, .frame = frame }, &error);
+  g_autoptr (GPtrArray) rows
+      = tf_ledger_rows (f->ledger, &(TfRowQuery){ .hints = TRUE, .frame = frame }, &error);
   const TfRow *row = g_ptr_array_index (rows, 2);
   g_assert_cmpuint (rows->len, ==, 3);
   g_assert_cmpstr (row->origin, ==, "hint");
@@ -129,7 +134,8 @@ test_newer_rule (Fixture *f, gconstpointer data)
   tf_ledger_add_hints (f->ledger, frame, "plain/1", hints, "flux-centroid/1", NULL);
   gint64 mark = fixture_keep (f->ledger, frame, person, fixture_hint (f->ledger, 0), 0, 10);
   g_ptr_array_remove_index (others, 2);
-  g_assert_true (tf_ledger_add_hints (f->ledger, frame, "plain/1 reach=50", others, "flux-centroid/1", NULL));
+  g_assert_true (
+      tf_ledger_add_hints (f->ledger, frame, "plain/1 reach=50", others, "flux-centroid/1", NULL));
   fixture_count (f->ledger, 1, 2); /* the mark stays, the open hints are the newer rule's */
   g_assert_true (tf_ledger_withdraw (f->ledger, mark, person, NULL));
   fixture_count (f->ledger, 0, 2);
@@ -140,7 +146,8 @@ static char *
 ids_of (TfLedger *ledger)
 {
   return fixture_sql_text (tf_ledger_get_path (ledger),
-                           "SELECT group_concat (hex (cid)) FROM (SELECT cid FROM (SELECT cid FROM frame UNION ALL SELECT cid"
+                           "SELECT group_concat (hex (cid)) FROM (SELECT cid FROM (SELECT cid FROM "
+                           "frame UNION ALL SELECT cid"
                            " FROM hint UNION ALL SELECT cid FROM measure) ORDER BY cid)");
 }
 
@@ -151,7 +158,8 @@ fill_frames (TfLedger *ledger, const int *order, int n)
     {
       g_autoptr (GPtrArray) hints = fixture_hints (order[k]);
       gint64 frame = fixture_frame (ledger, order[k]);
-      g_assert_true (tf_ledger_add_hints (ledger, frame, "plain/1", hints, "flux-centroid/1", NULL));
+      g_assert_true (
+          tf_ledger_add_hints (ledger, frame, "plain/1", hints, "flux-centroid/1", NULL));
     }
 }
 
@@ -160,7 +168,8 @@ static void
 test_gather (Fixture *f, gconstpointer data)
 {
   g_autoptr (GError) error = NULL;
-  g_autofree char *a = g_build_filename (f->folder, "a.ledger", NULL), *b = g_build_filename (f->folder, "b.ledger", NULL);
+  g_autofree char *a = g_build_filename (f->folder, "a.ledger", NULL),
+                  *b = g_build_filename (f->folder, "b.ledger", NULL);
   g_autofree char *all = g_build_filename (f->folder, "all.ledger", NULL);
   g_autoptr (TfLedger) one = fixture_open (f, a, NULL);
   g_autoptr (TfLedger) two = fixture_open (f, b, NULL);
@@ -189,11 +198,16 @@ test_gather (Fixture *f, gconstpointer data)
 
 /* The flat columns of tables, without those that are judged on reading. */
 static const char flat_columns[]
-    = "region passage mark origin label frame frame_checksum method program_version field_used size time time_source kind "
-      "instrument scale person vantage leading_lat_deg leading_carrington_lon_deg following_lat_deg following_carrington_lon_deg "
-      "lat_deg cmd_deg stonyhurst_lon_deg carrington_lon_deg mu axis_bearing_deg axis_tilt_deg tilt_sigma_deg separation_deg "
-      "separation_sigma_deg separation_mm compactness pieces leading_polarity leading_sure flux_unsigned_mx flux_positive_mx "
-      "flux_negative_mx imbalance magnetic_area_msh class axial_dipole_gauss floor_gauss floor_kind cautions";
+    = "region passage mark origin label frame frame_checksum method program_version field_used "
+      "size time time_source kind "
+      "instrument scale person vantage leading_lat_deg leading_carrington_lon_deg "
+      "following_lat_deg following_carrington_lon_deg "
+      "lat_deg cmd_deg stonyhurst_lon_deg carrington_lon_deg mu axis_bearing_deg axis_tilt_deg "
+      "tilt_sigma_deg separation_deg "
+      "separation_sigma_deg separation_mm compactness pieces leading_polarity leading_sure "
+      "flux_unsigned_mx flux_positive_mx "
+      "flux_negative_mx imbalance magnetic_area_msh class axial_dipole_gauss floor_gauss "
+      "floor_kind cautions";
 
 static char *
 query_text (Fixture *f, const char *sql)
@@ -207,22 +221,29 @@ test_views (Fixture *f, gconstpointer data)
   fill_frames (f->ledger, (int[]){ 1 }, 1);
   gint64 person = tf_ledger_person (f->ledger, "north", NULL);
   gint64 mark = fixture_keep (f->ledger, 1, person, fixture_hint (f->ledger, 0), 0, 11);
-  g_assert_true (tf_ledger_set_class (f->ledger, fixture_region (f->ledger, mark), 1, person, "βδ", "magnetogram", NULL));
+  g_assert_true (tf_ledger_set_class (f->ledger, fixture_region (f->ledger, mark), 1, person, "βδ",
+                                      "magnetogram", NULL));
   const char *const views[] = { "marks", "hints" };
   for (guint k = 0; k < G_N_ELEMENTS (views); k++)
     {
-      g_autofree char *sql = g_strdup_printf ("SELECT group_concat (name, ' ') FROM pragma_table_info ('%s')", views[k]);
+      g_autofree char *sql = g_strdup_printf (
+          "SELECT group_concat (name, ' ') FROM pragma_table_info ('%s')", views[k]);
       g_autofree char *columns = query_text (f, sql);
       g_assert_cmpstr (columns, ==, flat_columns);
     }
-  g_autofree char *row = query_text (f, "SELECT region || ' ' || origin || ' ' || time || ' ' || kind || ' ' || class || ' ' || "
-                                        "leading_lat_deg || ' ' || following_lat_deg || ' ' || floor_kind || ' ' || size FROM marks");
+  g_autofree char *row = query_text (
+      f,
+      "SELECT region || ' ' || origin || ' ' || time || ' ' || kind || ' ' || class || ' ' || "
+      "leading_lat_deg || ' ' || following_lat_deg || ' ' || floor_kind || ' ' || size FROM marks");
   /* frame 11 of the fixture: 2013-10-12T06:00 and 11 times six hours */
-  g_assert_cmpstr (row, ==, "T2013-0001 kept as hinted 2013-10-15T00:00:00Z disk βδ 17.2 18.4 even region");
-  g_autofree char *counts = query_text (f, "SELECT (SELECT count (*) FROM hints) || ' ' || (SELECT marks || ' ' || hints FROM frames)"
-                                           " || ' ' || (SELECT region || ' ' || marks FROM regions)");
+  g_assert_cmpstr (row, ==,
+                   "T2013-0001 kept as hinted 2013-10-15T00:00:00Z disk βδ 17.2 18.4 even region");
+  g_autofree char *counts = query_text (
+      f, "SELECT (SELECT count (*) FROM hints) || ' ' || (SELECT marks || ' ' || hints FROM frames)"
+         " || ' ' || (SELECT region || ' ' || marks FROM regions)");
   g_assert_cmpstr (counts, ==, "2 1 2 T2013-0001 1");
-  g_autofree char *kinds = query_text (f, "SELECT group_concat (kind || ':' || coalesce (person, '-')) FROM journal");
+  g_autofree char *kinds
+      = query_text (f, "SELECT group_concat (kind || ':' || coalesce (person, '-')) FROM journal");
   g_assert_cmpstr (kinds, ==, "begin:-,person:north,keep:north,class:north");
 }
 
