@@ -53,9 +53,11 @@ startup (GApplication *application)
 {
   static const GActionEntry entries[] = { { "quit", quit, NULL, NULL, NULL } };
   G_APPLICATION_CLASS (tf_application_parent_class)->startup (application);
-  g_action_map_add_action_entries (G_ACTION_MAP (application), entries, G_N_ELEMENTS (entries), application);
+  g_action_map_add_action_entries (G_ACTION_MAP (application), entries, G_N_ELEMENTS (entries),
+                                   application);
   for (guint k = 0; k < G_N_ELEMENTS (accels); k++)
-    gtk_application_set_accels_for_action (GTK_APPLICATION (application), accels[k].action, accels[k].keys);
+    gtk_application_set_accels_for_action (GTK_APPLICATION (application), accels[k].action,
+                                           accels[k].keys);
   gtk_window_set_default_icon_name ("io.tiltfield.Tiltfield");
 }
 
@@ -69,7 +71,8 @@ window_for (TfApplication *self, const char *ledger)
         continue;
       TfSession *session = tf_window_get_session (l->data);
       const char *path = tf_session_get_ledger_path (session);
-      if ((path == NULL && tf_session_get_n_frames (session) == 0) || ledger == NULL || g_strcmp0 (path, ledger) == 0)
+      if ((path == NULL && tf_session_get_n_frames (session) == 0) || ledger == NULL
+          || g_strcmp0 (path, ledger) == 0)
         return l->data;
     }
   return tf_window_new (GTK_APPLICATION (self));
@@ -98,7 +101,8 @@ open_last (TfWindow *window)
 {
   TfSession *session = tf_window_get_session (window);
   g_autofree char *last = tf_preferences_dup ("ledger");
-  if (last != NULL && tf_session_get_ledger_path (session) == NULL && g_file_test (last, G_FILE_TEST_EXISTS))
+  if (last != NULL && tf_session_get_ledger_path (session) == NULL
+      && g_file_test (last, G_FILE_TEST_EXISTS))
     tf_session_open_ledger (session, last, 0);
 }
 
@@ -117,7 +121,8 @@ command_line (GApplication *application, GApplicationCommandLine *line)
     tf_session_set_show_hints (tf_window_get_session (window), TRUE);
   if (paths[0] == NULL)
     open_last (window);
-  else if (ledger == NULL || g_strcmp0 (tf_session_get_ledger_path (tf_window_get_session (window)), ledger) != 0
+  else if (ledger == NULL
+           || g_strcmp0 (tf_session_get_ledger_path (tf_window_get_session (window)), ledger) != 0
            || paths[1] != NULL)
     tf_window_open (window, paths);
   return 0;
@@ -157,5 +162,6 @@ TfApplication *
 tf_application_new (void)
 {
   return g_object_new (TF_TYPE_APPLICATION, "application-id", "io.tiltfield.Tiltfield", "flags",
-                       G_APPLICATION_HANDLES_COMMAND_LINE, "resource-base-path", "/io/tiltfield/Tiltfield", NULL);
+                       G_APPLICATION_HANDLES_COMMAND_LINE, "resource-base-path",
+                       "/io/tiltfield/Tiltfield", NULL);
 }

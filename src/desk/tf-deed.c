@@ -48,9 +48,15 @@ tf_deed_free (TfDeed *deed)
 static gboolean
 run_keep (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 {
-  TfMarkDeed mark = { .frame = deed->frame, .person = person, .hint = deed->hint,
-                      .follows = deed->follows, .region = deed->region, .origin = deed->origin,
-                      .outline = deed->outline, .measure = &deed->measure, .method = deed->method };
+  TfMarkDeed mark = { .frame = deed->frame,
+                      .person = person,
+                      .hint = deed->hint,
+                      .follows = deed->follows,
+                      .region = deed->region,
+                      .origin = deed->origin,
+                      .outline = deed->outline,
+                      .measure = &deed->measure,
+                      .method = deed->method };
   deed->mark = tf_ledger_keep (ledger, &mark, error);
   return deed->mark != 0;
 }
@@ -69,8 +75,8 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
     case TF_DEED_NOTE:
       return tf_ledger_set_note (ledger, deed->region, person, deed->text, error);
     case TF_DEED_CLASS:
-      return tf_ledger_set_class (ledger, deed->region, deed->frame, person, deed->text, "magnetogram",
-                                  error);
+      return tf_ledger_set_class (ledger, deed->region, deed->frame, person, deed->text,
+                                  "magnetogram", error);
     case TF_DEED_UNDO:
       return tf_ledger_undo (ledger, person, &deed->what, error);
     case TF_DEED_REDO:
@@ -97,9 +103,14 @@ const char *
 tf_deed_name (const TfDeed *deed)
 {
   static const char *const names[] = {
-    N_ ("keeping the outline"), N_ ("dropping the hint"), N_ ("withdrawing the mark"),
-    N_ ("the note"),            N_ ("the class"),         N_ ("undoing"),
-    N_ ("redoing"),             N_ ("the draft"),
+    N_ ("keeping the outline"),
+    N_ ("dropping the hint"),
+    N_ ("withdrawing the mark"),
+    N_ ("the note"),
+    N_ ("the class"),
+    N_ ("undoing"),
+    N_ ("redoing"),
+    N_ ("the draft"),
   };
   return _ (names[deed->kind]);
 }

@@ -3,9 +3,9 @@
  */
 #pragma once
 
-/* TfDeed: one thing a person did, on its way into the ledger. It holds all it needs, so that it can wait, be tried again, and
- * be carried out in the writer's thread without anything of the window.
- */
+/* TfDeed: one thing a person did, on its way into the ledger. It holds all it needs, so that it
+ * can wait, be tried again, and be carried out in the writer's thread without anything of the
+ * window. */
 
 #include "tf-ledger.h"
 
@@ -20,7 +20,7 @@ typedef enum
   TF_DEED_CLASS,    /* region, frame, text */
   TF_DEED_UNDO,
   TF_DEED_REDO,
-  TF_DEED_DRAFT,    /* frame, text; NULL text takes the draft away */
+  TF_DEED_DRAFT, /* frame, text; NULL text takes the draft away */
 } TfDeedKind;
 
 typedef struct

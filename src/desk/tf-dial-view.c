@@ -17,7 +17,11 @@ struct _TfDialView
 G_DEFINE_FINAL_TYPE (TfDialView, tf_dial_view, GTK_TYPE_WIDGET)
 
 static const double label_share = 0.8;
-enum { HEIGHT = 128, SIGN_SIZE = 22 };
+enum
+{
+  HEIGHT = 128,
+  SIGN_SIZE = 22
+};
 
 static void
 snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
@@ -32,8 +36,8 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
 }
 
 static void
-measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural, int *minimum_baseline,
-         int *natural_baseline)
+measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural,
+         int *minimum_baseline, int *natural_baseline)
 {
   double text = tf_widget_text_size (widget) / 14.0; /* room for the labels at larger text */
   *minimum = *natural = (int)(HEIGHT * fmax (1, 0.3 + 0.7 * text));
@@ -60,11 +64,13 @@ tf_dial_view_class_init (TfDialViewClass *klass)
 static void
 tf_dial_view_init (TfDialView *self)
 {
-  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Dial"), -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Dial"),
+                                  -1);
   self->dial.bearing_deg = self->dial.joy_deg = NAN;
 }
 
-/* -- the diamond beside the verdict ------------------------------------------------------------------- */
+/* -- the diamond beside the verdict
+ * ------------------------------------------------------------------- */
 
 struct _TfVerdictSign
 {
@@ -81,13 +87,14 @@ sign_snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   graphene_rect_t all = GRAPHENE_RECT_INIT (0, 0, (float)size, (float)size);
   TfChartStyle style = tf_widget_chart_style (widget, 1);
   cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
-  tf_chart_diamond (cr, &style, size / 2.0, size / 2.0, size * 0.36, TF_VERDICT_SIGN (widget)->kind);
+  tf_chart_diamond (cr, &style, size / 2.0, size / 2.0, size * 0.36,
+                    TF_VERDICT_SIGN (widget)->kind);
   cairo_destroy (cr);
 }
 
 static void
-sign_measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural,
-              int *minimum_baseline, int *natural_baseline)
+sign_measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum,
+              int *natural, int *minimum_baseline, int *natural_baseline)
 {
   *minimum = *natural = SIGN_SIZE;
 }
@@ -106,7 +113,8 @@ tf_verdict_sign_class_init (TfVerdictSignClass *klass)
   GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
   widget->snapshot = sign_snapshot;
   widget->measure = sign_measure;
-  gtk_widget_class_set_accessible_role (widget, GTK_ACCESSIBLE_ROLE_PRESENTATION); /* the words stand beside it */
+  gtk_widget_class_set_accessible_role (
+      widget, GTK_ACCESSIBLE_ROLE_PRESENTATION); /* the words stand beside it */
 }
 
 static void

@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfDialView: the dial of chart/tf-dial.h in a widget. TfVerdictSign: the diamond beside the verdict. */
+/* TfDialView: the dial of chart/tf-dial.h in a widget. TfVerdictSign: the diamond beside the
+ * verdict. */
 
 #include <gtk/gtk.h>
 

@@ -3,7 +3,10 @@
  */
 #include "tf-feed.h"
 
-enum { REPORT_MS = 100 };
+enum
+{
+  REPORT_MS = 100
+};
 
 struct _TfFeed
 {
@@ -98,7 +101,8 @@ static TfFeedState
 copy_state (TfFeed *feed)
 {
   TfFeedState copy = feed->state;
-  copy.messages = g_ptr_array_copy (feed->state.messages, (GCopyFunc)(void (*) (void))g_strdup, NULL);
+  copy.messages
+      = g_ptr_array_copy (feed->state.messages, (GCopyFunc)(void (*) (void))g_strdup, NULL);
   g_ptr_array_set_free_func (copy.messages, g_free);
   copy.error = g_strdup (feed->state.error);
   return copy;

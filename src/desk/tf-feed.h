@@ -3,9 +3,9 @@
  */
 #pragma once
 
-/* TfFeed: frames into the ledger off the main thread, over a connection of its own (all it writes are machine rows, so that a person's
- * deeds need not wait behind a long fill). Reports come to the main loop at most ten times a second.
- */
+/* TfFeed: frames into the ledger off the main thread, over a connection of its own (all it
+ * writes are machine rows, so that a person's deeds need not wait behind a long fill). Reports
+ * come to the main loop at most ten times a second. */
 
 #include <gio/gio.h>
 
@@ -19,7 +19,7 @@ typedef struct _TfFeed TfFeed;
 typedef struct
 {
   guint done, total, added, there, refused, failed, hints;
-  gboolean listing;  /* still looking for files */
+  gboolean listing; /* still looking for files */
   gboolean finished, cancelled;
   GPtrArray *messages; /* char *: one a file that could not be read */
   char *error;         /* nothing could be done */

@@ -30,7 +30,8 @@ tf_frame_item_class_init (TfFrameItemClass *klass)
 {
   G_OBJECT_CLASS (klass)->finalize = finalize;
   /* "changed": anything that a row of the roll shows */
-  g_signal_new ("changed", TF_TYPE_FRAME_ITEM, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL, G_TYPE_NONE, 0);
+  g_signal_new ("changed", TF_TYPE_FRAME_ITEM, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL, G_TYPE_NONE,
+                0);
 }
 
 static void

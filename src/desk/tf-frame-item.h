@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfFrameItem: one frame of the roll, as a list shows it. Follows what the ledger says of it; the thumbnail comes later. */
+/* TfFrameItem: one frame of the roll, as a list shows it. Follows what the ledger says of it;
+ * the thumbnail comes later. */
 
 #include <gtk/gtk.h>
 
@@ -28,7 +29,8 @@ TfFrameItem *tf_frame_item_new (TfFrameRow *row);
 void tf_frame_item_set_row (TfFrameItem *item, TfFrameRow *row);
 const TfFrameRow *tf_frame_item_get_row (TfFrameItem *item);
 TfFrameState tf_frame_item_get_state (TfFrameItem *item);
-/** tf_frame_item_get_day: (nullable): "12 October 2013" when it is the first of its day in the list. */
+/** tf_frame_item_get_day: (nullable): "12 October 2013" when it is the first of its day in the
+ * list. */
 const char *tf_frame_item_get_day (TfFrameItem *item);
 void tf_frame_item_set_day (TfFrameItem *item, const char *day);
 GdkTexture *tf_frame_item_get_thumbnail (TfFrameItem *item);

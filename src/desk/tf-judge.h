@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfJudge: Hale's verdict for what the window shows, under the default study's divides. Immutable, may be read from any thread. */
+/* TfJudge: Hale's verdict for what the window shows, under the default study's divides.
+ * Immutable, may be read from any thread. */
 
 #include "tf-ledger.h"
 #include "tf-verdict.h"

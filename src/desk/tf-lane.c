@@ -125,9 +125,9 @@ tf_lane_reopen (TfLane *lane)
 }
 
 void
-tf_lane_push (TfLane *lane, gpointer source, GCancellable *cancellable, TfLaneFunc func, gpointer data,
-              GDestroyNotify free_data, GDestroyNotify free_result, GAsyncReadyCallback done,
-              gpointer user_data)
+tf_lane_push (TfLane *lane, gpointer source, GCancellable *cancellable, TfLaneFunc func,
+              gpointer data, GDestroyNotify free_data, GDestroyNotify free_result,
+              GAsyncReadyCallback done, gpointer user_data)
 {
   g_return_if_fail (lane != NULL && func != NULL);
   Job *job = g_new0 (Job, 1);

@@ -3,11 +3,12 @@
  */
 #pragma once
 
-/* TfLane: one thread that owns one connection to a ledger. Jobs run there one after the other, in the order in which they were
- * pushed; what they return comes back in the main loop as a GTask. The window has two: one that reads and one that writes.
+/* TfLane: one thread that owns one connection to a ledger. Jobs run there one after the other,
+ * in the order in which they were pushed; what they return comes back in the main loop as a
+ * GTask. The window has two: one that reads and one that writes.
  *
- * The file is opened in the thread. When that fails every job fails with the same error, until tf_lane_reopen().
- */
+ * The file is opened in the thread. When that fails every job fails with the same error, until
+ * tf_lane_reopen(). */
 
 #include <gio/gio.h>
 
@@ -33,9 +34,9 @@ void tf_lane_reopen (TfLane *lane);
  * @data: (transfer full): freed with @free_data in the thread
  * @done: called in the main loop; takes the result with tf_lane_finish()
  */
-void tf_lane_push (TfLane *lane, gpointer source, GCancellable *cancellable, TfLaneFunc func, gpointer data,
-                   GDestroyNotify free_data, GDestroyNotify free_result, GAsyncReadyCallback done,
-                   gpointer user_data);
+void tf_lane_push (TfLane *lane, gpointer source, GCancellable *cancellable, TfLaneFunc func,
+                   gpointer data, GDestroyNotify free_data, GDestroyNotify free_result,
+                   GAsyncReadyCallback done, gpointer user_data);
 gpointer tf_lane_finish (GAsyncResult *result, GError **error);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLane, tf_lane_close)

@@ -3,7 +3,10 @@
  */
 #include "tf-loader.h"
 
-enum { N_KEPT = 3 };
+enum
+{
+  N_KEPT = 3
+};
 
 typedef struct
 {
@@ -67,7 +70,8 @@ find_kept (TfLoader *loader, const char *path, const TfFrameSpec *spec)
   for (GList *l = loader->kept.head; l != NULL; l = l->next)
     {
       Kept *kept = l->data;
-      if (g_str_equal (kept->path, path) && kept->spec.hdu == spec->hdu && kept->spec.plane == spec->plane)
+      if (g_str_equal (kept->path, path) && kept->spec.hdu == spec->hdu
+          && kept->spec.plane == spec->plane)
         return kept;
     }
   return NULL;
@@ -159,7 +163,8 @@ request_new (TfLoader *loader, const char *path, const TfFrameSpec *spec)
 }
 
 void
-tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec, TfLoadFunc func, gpointer data)
+tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec, TfLoadFunc func,
+                gpointer data)
 {
   g_return_if_fail (loader != NULL && path != NULL && spec != NULL && func != NULL);
   tf_loader_cancel (loader);

@@ -13,14 +13,16 @@
 static const guint32 ground = 0xff17191d;
 static const double label_share = 0.86;
 
-/* -- the picture ---------------------------------------------------------------------------------- */
+/* -- the picture
+ * ---------------------------------------------------------------------------------- */
 
 void
 tf_plate_draw_picture (TfPlate *self, int width, int height)
 {
   TfFrame *frame = tf_session_get_frame (self->session);
   int scale = gtk_widget_get_scale_factor (GTK_WIDGET (self));
-  gboolean fits = self->picture != NULL && cairo_image_surface_get_width (self->picture) == width * scale
+  gboolean fits = self->picture != NULL
+                  && cairo_image_surface_get_width (self->picture) == width * scale
                   && cairo_image_surface_get_height (self->picture) == height * scale;
   if (frame == NULL || (fits && !self->picture_stale))
     return;
@@ -32,15 +34,20 @@ tf_plate_draw_picture (TfPlate *self, int width, int height)
   view.height = height * scale;
   view.zoom *= scale;
   TfPaint paint = { .range_gauss = tf_session_get_range (self->session),
-                    .palette = tf_session_get_palette (self->session), .ground = ground, .dark = TRUE };
-  TfWork work = { .pool = tf_session_get_pool (self->session), .workers = tf_session_get_workers (self->session) };
+                    .palette = tf_session_get_palette (self->session),
+                    .ground = ground,
+                    .dark = TRUE };
+  TfWork work = { .pool = tf_session_get_pool (self->session),
+                  .workers = tf_session_get_workers (self->session) };
   guint32 *pixels = (guint32 *)(gpointer)cairo_image_surface_get_data (self->picture);
-  tf_picture_render (frame, &view, &paint, pixels, (guint)cairo_image_surface_get_stride (self->picture) / 4, &work);
+  tf_picture_render (frame, &view, &paint, pixels,
+                     (guint)cairo_image_surface_get_stride (self->picture) / 4, &work);
   cairo_surface_mark_dirty (self->picture);
   self->picture_stale = FALSE;
 }
 
-/* -- the overlay ------------------------------------------------------------------------------------- */
+/* -- the overlay
+ * ------------------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -82,15 +89,20 @@ collect_items (TfPlate *self)
     {
       g_autoptr (TfRegionItem) region = g_list_model_get_item (list, k);
       const TfRow *row = tf_region_item_get_row (region);
-      TfOverlayItem item = { .outline = row->outline, .stroke = row->is_hint ? TF_STROKE_HINT : TF_STROKE_MARK,
-                             .chosen = region == chosen && draft == NULL, .label = tf_region_item_get_label (region),
+      TfOverlayItem item = { .outline = row->outline,
+                             .stroke = row->is_hint ? TF_STROKE_HINT : TF_STROKE_MARK,
+                             .chosen = region == chosen && draft == NULL,
+                             .label = tf_region_item_get_label (region),
                              .verdict = (int)tf_region_item_get_verdict (region).kind };
       set_poles (&item, &row->measure);
       g_array_append_val (items, item);
     }
   if (draft != NULL)
     {
-      TfOverlayItem item = { .outline = draft, .stroke = TF_STROKE_DRAFT, .chosen = TRUE, .label = _ ("draft"),
+      TfOverlayItem item = { .outline = draft,
+                             .stroke = TF_STROKE_DRAFT,
+                             .chosen = TRUE,
+                             .label = _ ("draft"),
                              .verdict = (int)tf_session_get_verdict (self->session).kind };
       set_poles (&item, tf_session_get_measure (self->session));
       g_array_append_val (items, item);
@@ -115,9 +127,15 @@ set_limb (TfOverlay *overlay, const Projector *p)
 static TfOverlay
 overlay_for (TfPlate *self, Projector *p, GArray *items)
 {
-  TfOverlay overlay = { .project = project, .data = p,
-                        .central_carrington_deg = tf_geometry_central_carrington (p->geometry), .step_deg = 10,
-                        .graticule = TRUE, .outlines = TRUE, .axes = TRUE, .labels = TRUE, .on_dark = TRUE };
+  TfOverlay overlay = { .project = project,
+                        .data = p,
+                        .central_carrington_deg = tf_geometry_central_carrington (p->geometry),
+                        .step_deg = 10,
+                        .graticule = TRUE,
+                        .outlines = TRUE,
+                        .axes = TRUE,
+                        .labels = TRUE,
+                        .on_dark = TRUE };
   overlay.items = (const TfOverlayItem *)(gconstpointer)items->data;
   overlay.n_items = items->len;
   set_limb (&overlay, p);
@@ -128,14 +146,16 @@ static TfChartStyle
 overlay_style (TfPlate *self)
 {
   TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
-  return tf_chart_style (TRUE, style.contrast, style.text_pt); /* the plate is dark in both styles */
+  return tf_chart_style (TRUE, style.contrast,
+                         style.text_pt); /* the plate is dark in both styles */
 }
 
 static gboolean
 same_scale (const TfView *a, const TfView *b)
 {
-  return a->look == b->look && fabs (a->zoom - b->zoom) < 1e-9 && fabs (a->turn_deg - b->turn_deg) < 1e-9
-         && fabs (a->width - b->width) < 0.5 && fabs (a->height - b->height) < 0.5
+  return a->look == b->look && fabs (a->zoom - b->zoom) < 1e-9
+         && fabs (a->turn_deg - b->turn_deg) < 1e-9 && fabs (a->width - b->width) < 0.5
+         && fabs (a->height - b->height) < 0.5
          && fabs (a->centre_lon_deg - b->centre_lon_deg) < 1e-9
          && fabs (a->centre_lat_deg - b->centre_lat_deg) < 1e-9;
 }
@@ -148,7 +168,8 @@ moved_by (const TfPlate *self, double *dx, double *dy)
   const TfGeometry *geometry = tf_frame_get_geometry (tf_session_get_frame (self->session));
   double x0 = 0, y0 = 0, x1 = 0, y1 = 0;
   *dx = *dy = 0;
-  if (view->look == TF_LOOK_DISK && tf_view_from_pixel (&self->overlay_view, geometry, 1, 1, &x0, &y0)
+  if (view->look == TF_LOOK_DISK
+      && tf_view_from_pixel (&self->overlay_view, geometry, 1, 1, &x0, &y0)
       && tf_view_from_pixel (view, geometry, 1, 1, &x1, &y1))
     {
       *dx = x1 - x0;
@@ -160,8 +181,11 @@ static gboolean
 overlay_serves (TfPlate *self)
 {
   double dx, dy;
-  const TfMeasure *measure = tf_session_get_draft (self->session) != NULL ? tf_session_get_measure (self->session) : NULL;
-  const void *now[3] = { tf_session_get_draft (self->session), tf_session_get_region (self->session), measure };
+  const TfMeasure *measure = tf_session_get_draft (self->session) != NULL
+                                 ? tf_session_get_measure (self->session)
+                                 : NULL;
+  const void *now[3]
+      = { tf_session_get_draft (self->session), tf_session_get_region (self->session), measure };
   gboolean serves = self->overlay != NULL && !self->overlay_stale
                     && same_scale (&self->overlay_view, tf_session_get_view (self->session));
   for (guint k = 0; k < G_N_ELEMENTS (now); k++)
@@ -185,7 +209,8 @@ tf_plate_draw_overlay (TfPlate *self, int width, int height)
   double full_width = width + 2.0 * TF_PLATE_MARGIN, full_height = height + 2.0 * TF_PLATE_MARGIN;
   g_clear_pointer (&self->overlay, cairo_surface_destroy);
   self->overlay_view = *tf_session_get_view (self->session);
-  self->overlay = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, (int)full_width * scale, (int)full_height * scale);
+  self->overlay = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, (int)full_width * scale,
+                                              (int)full_height * scale);
   Projector p = { &self->overlay_view, tf_frame_get_geometry (frame), TF_PLATE_MARGIN };
   g_autoptr (GArray) items = collect_items (self);
   TfOverlay overlay = overlay_for (self, &p, items);
@@ -205,7 +230,8 @@ tf_plate_overlay_shift (TfPlate *self, double *dx, double *dy)
   *dy = round (*dy) - TF_PLATE_MARGIN;
 }
 
-/* -- the line in hand ---------------------------------------------------------------------------------- */
+/* -- the line in hand
+ * ---------------------------------------------------------------------------------- */
 
 typedef double Point[2];
 
@@ -231,8 +257,15 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
     }
   TfOverlayItem item = { .stroke = TF_STROKE_DRAFT, .chosen = TRUE, .verdict = -1 };
   set_poles (&item, tf_session_get_measure (self->session));
-  TfOverlay overlay = { .project = project, .data = &p, .central_carrington_deg = NAN, .axes = TRUE, .items = &item,
-                        .n_items = 1, .limb_rx = NAN, .draft = (const Point *)points, .n_draft = seen,
+  TfOverlay overlay = { .project = project,
+                        .data = &p,
+                        .central_carrington_deg = NAN,
+                        .axes = TRUE,
+                        .items = &item,
+                        .n_items = 1,
+                        .limb_rx = NAN,
+                        .draft = (const Point *)points,
+                        .n_draft = seen,
                         .on_dark = TRUE };
   TfChartStyle style = overlay_style (self);
   tf_overlay_draw (cr, &overlay, &style, (TfArea){ 0, 0, width, height });

@@ -77,9 +77,11 @@ frame_changed (TfPlatePane *self)
 {
   TfFrameItem *item = tf_session_get_frame_item (self->session);
   const char *problem = tf_session_get_frame_problem (self->session);
-  const char *text = item == NULL ? _ ("Choose a frame in the roll, or drop frames here.") : problem;
+  const char *text
+      = item == NULL ? _ ("Choose a frame in the roll, or drop frames here.") : problem;
   gboolean open = tf_session_get_frame (self->session) != NULL;
-  gtk_widget_set_visible (self->trouble_box, text != NULL && !open && !tf_session_is_loading (self->session));
+  gtk_widget_set_visible (self->trouble_box,
+                          text != NULL && !open && !tf_session_is_loading (self->session));
   gtk_label_set_label (self->trouble, text != NULL ? text : "");
   gtk_widget_set_visible (self->tools, open);
   status_changed (self);
@@ -93,7 +95,8 @@ choice_changed (TfPlatePane *self)
   if (tool == TF_TOOL_OUTLINE)
     words = _ ("Draw round the region with the button held. Esc puts the tool away.");
   else if (tool == TF_TOOL_POLYGON)
-    words = _ ("Click the corners. Enter closes, Ctrl+Z takes the last one back, Esc puts the tool away.");
+    words = _ (
+        "Click the corners. Enter closes, Ctrl+Z takes the last one back, Esc puts the tool away.");
   else if (tf_session_get_draft (self->session) != NULL)
     words = _ ("A draft: K keeps it as a mark, Esc discards it.");
   gtk_widget_set_visible (GTK_WIDGET (self->tool_words), words != NULL);
@@ -106,10 +109,14 @@ tf_plate_pane_set_session (TfPlatePane *self, TfSession *session)
   g_return_if_fail (TF_IS_PLATE_PANE (self) && TF_IS_SESSION (session) && self->session == NULL);
   self->session = g_object_ref (session);
   tf_plate_set_session (self->plate, session);
-  g_signal_connect_object (session, "view-changed", G_CALLBACK (view_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "view-changed", G_CALLBACK (view_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self,
+                           G_CONNECT_SWAPPED);
   view_changed (self);
   frame_changed (self);
   choice_changed (self);
@@ -169,11 +176,16 @@ tf_plate_pane_init (TfPlatePane *self)
 {
   gtk_widget_init_template (GTK_WIDGET (self));
   GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));
-  g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (text_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (text_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (text_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (text_changed), self,
+                           G_CONNECT_SWAPPED);
   text_changed (self);
-  gtk_scale_set_format_value_func (self->range, (GtkScaleFormatValueFunc)(void (*) (void))format_range, self, NULL);
-  g_signal_connect_object (self->plate, "notify::readout", G_CALLBACK (readout_changed), self, G_CONNECT_SWAPPED);
+  gtk_scale_set_format_value_func (
+      self->range, (GtkScaleFormatValueFunc)(void (*) (void))format_range, self, NULL);
+  g_signal_connect_object (self->plate, "notify::readout", G_CALLBACK (readout_changed), self,
+                           G_CONNECT_SWAPPED);
   readout_changed (self);
-  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Plate with its tools"), -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL,
+                                  _ ("Plate with its tools"), -1);
 }

@@ -3,8 +3,8 @@
  */
 #pragma once
 
-/* TfPlatePane: the plate with its foot (read-out, looks, field range, north), its drawing tools at the top, and what stands over it while a
- * frame opens or when there is none. */
+/* TfPlatePane: the plate with its foot (read-out, looks, field range, north), its drawing tools
+ * at the top, and what stands over it while a frame opens or when there is none. */
 
 #include "tf-plate.h"
 

@@ -18,7 +18,8 @@ struct _TfPlate
   cairo_surface_t *overlay; /* larger than the widget by TF_PLATE_MARGIN on every side */
   gboolean overlay_stale;
   TfView overlay_view;
-  const void *overlay_of[3]; /* draft, region, measured draft that it was made for; compared, never followed */
+  const void *overlay_of
+      [3]; /* draft, region, measured draft that it was made for; compared, never followed */
 
   gboolean pointer_in;
   double pointer_x, pointer_y;
@@ -28,9 +29,13 @@ struct _TfPlate
   guint tick;
 };
 
-enum { TF_PLATE_MARGIN = 160 };
+enum
+{
+  TF_PLATE_MARGIN = 160
+};
 
-/** tf_plate_draw_picture, tf_plate_draw_overlay: see to it that the surfaces are what the session shows. */
+/** tf_plate_draw_picture, tf_plate_draw_overlay: see to it that the surfaces are what the session
+ * shows. */
 void tf_plate_draw_picture (TfPlate *plate, int width, int height);
 void tf_plate_draw_overlay (TfPlate *plate, int width, int height);
 void tf_plate_draw_line (TfPlate *plate, cairo_t *cr, int width, int height);

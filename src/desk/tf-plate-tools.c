@@ -1,15 +1,19 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* Pointer and keys on the plate. Without a tool a drag pans and a click chooses; with the outline tool a drag draws; with the polygon tool
- * each click is a corner. The middle button always pans, the wheel zooms about the pointer, arrow keys pan.
- */
+/* Pointer and keys on the plate. Without a tool a drag pans and a click chooses; with the
+ * outline tool a drag draws; with the polygon tool each click is a corner. The middle button
+ * always pans, the wheel zooms about the pointer, arrow keys pan. */
 
 #include "tf-plate-private.h"
 
 #include <math.h>
 
-enum { CLICK_SLACK = 4, KEY_STEP = 40 };
+enum
+{
+  CLICK_SLACK = 4,
+  KEY_STEP = 40
+};
 static const double wheel_factor = 1.18;
 
 static const TfGeometry *
@@ -42,13 +46,15 @@ draw_to (TfPlate *self, double x, double y)
 {
   TfPlace place;
   const TfGeometry *geometry = geometry_of (self);
-  if (geometry == NULL || !tf_view_to_sun (tf_session_get_view (self->session), geometry, x, y, &place))
+  if (geometry == NULL
+      || !tf_view_to_sun (tf_session_get_view (self->session), geometry, x, y, &place))
     return; /* off the Sun: the line goes on where it comes back */
   tf_session_draw_to (self->session, place.carrington_lon_deg, place.lat_deg);
   measure_soon (self);
 }
 
-/* -- drag and click -------------------------------------------------------------------------------- */
+/* -- drag and click
+ * -------------------------------------------------------------------------------- */
 
 static gboolean
 is_drawing (TfPlate *self)
@@ -80,8 +86,8 @@ drag_to (TfPlate *self, double x, double y, gboolean pan)
   self->last_y = y;
 }
 
-/* GTK gives one move a frame of animation; a hand is quicker. The moves between are in the event's history, in places
- * of the surface, and belong to the line. */
+/* GTK gives one move a frame of animation; a hand is quicker. The moves between are in the
+ * event's history, in places of the surface, and belong to the line. */
 static void
 draw_between (GtkGestureDrag *gesture, double x, double y, TfPlate *self)
 {
@@ -104,7 +110,8 @@ drag_update (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
   if (!self->moved && hypot (dx, dy) < CLICK_SLACK && !is_drawing (self))
     return;
   self->moved = TRUE;
-  gboolean middle = gtk_gesture_single_get_current_button (GTK_GESTURE_SINGLE (gesture)) == GDK_BUTTON_MIDDLE;
+  gboolean middle
+      = gtk_gesture_single_get_current_button (GTK_GESTURE_SINGLE (gesture)) == GDK_BUTTON_MIDDLE;
   if (!middle && is_drawing (self))
     draw_between (gesture, x + dx, y + dy, self);
   drag_to (self, x + dx, y + dy, middle || !is_drawing (self));
@@ -123,7 +130,8 @@ static void
 drag_end (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
 {
   double x, y;
-  if (self->session == NULL || gtk_gesture_single_get_current_button (GTK_GESTURE_SINGLE (gesture)) == GDK_BUTTON_MIDDLE)
+  if (self->session == NULL
+      || gtk_gesture_single_get_current_button (GTK_GESTURE_SINGLE (gesture)) == GDK_BUTTON_MIDDLE)
     return;
   gtk_gesture_drag_get_start_point (gesture, &x, &y);
   if (is_drawing (self))
@@ -132,7 +140,8 @@ drag_end (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
     click (self, x + dx, y + dy);
 }
 
-/* -- wheel, motion, keys ------------------------------------------------------------------------------ */
+/* -- wheel, motion, keys
+ * ------------------------------------------------------------------------------ */
 
 static gboolean
 scrolled (GtkEventControllerScroll *scroll, double dx, double dy, TfPlate *self)
@@ -165,7 +174,8 @@ leave (GtkEventControllerMotion *controller, TfPlate *self)
 }
 
 static gboolean
-key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state, TfPlate *self)
+key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
+             TfPlate *self)
 {
   if (self->session == NULL || (state & (GDK_CONTROL_MASK | GDK_ALT_MASK)) != 0)
     return FALSE;
@@ -204,7 +214,8 @@ tf_plate_add_tools (TfPlate *self)
 {
   add_drag (self, GDK_BUTTON_PRIMARY);
   add_drag (self, GDK_BUTTON_MIDDLE);
-  GtkEventController *scroll = gtk_event_controller_scroll_new (GTK_EVENT_CONTROLLER_SCROLL_VERTICAL);
+  GtkEventController *scroll
+      = gtk_event_controller_scroll_new (GTK_EVENT_CONTROLLER_SCROLL_VERTICAL);
   g_signal_connect (scroll, "scroll", G_CALLBACK (scrolled), self);
   gtk_widget_add_controller (GTK_WIDGET (self), scroll);
   GtkEventController *pointer = gtk_event_controller_motion_new ();

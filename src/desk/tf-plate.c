@@ -12,10 +12,14 @@
 
 G_DEFINE_FINAL_TYPE (TfPlate, tf_plate, GTK_TYPE_WIDGET)
 
-enum { PROP_READOUT = 1 };
+enum
+{
+  PROP_READOUT = 1
+};
 static const GdkRGBA ground = { 0.0902f, 0.098f, 0.1137f, 1 };
 
-/* -- words ---------------------------------------------------------------------------------------------- */
+/* -- words
+ * ---------------------------------------------------------------------------------------------- */
 
 static void
 append_field (GString *text, double gauss)
@@ -43,10 +47,12 @@ dup_readout (TfPlate *self)
   if (!tf_view_to_sun (view, geometry, self->pointer_x, self->pointer_y, &place))
     return g_strdup (_ ("off the Sun"));
   GString *text = g_string_new (NULL);
-  g_string_append_printf (text, "%s%.1f", place.lat_deg < 0 ? _ ("S") : _ ("N"), fabs (place.lat_deg));
+  g_string_append_printf (text, "%s%.1f", place.lat_deg < 0 ? _ ("S") : _ ("N"),
+                          fabs (place.lat_deg));
   if (isfinite (place.cmd_deg))
-    g_string_append_printf (text, _ (" · CMD %s%.1f · Stonyhurst %+.1f°"), place.cmd_deg < 0 ? _ ("E") : _ ("W"),
-                            fabs (place.cmd_deg), place.stonyhurst_lon_deg);
+    g_string_append_printf (text, _ (" · CMD %s%.1f · Stonyhurst %+.1f°"),
+                            place.cmd_deg < 0 ? _ ("E") : _ ("W"), fabs (place.cmd_deg),
+                            place.stonyhurst_lon_deg);
   g_string_append_printf (text, _ (" · Carrington %.1f°"), place.carrington_lon_deg);
   if (isfinite (place.mu))
     g_string_append_printf (text, " · μ %.2f", place.mu);
@@ -92,8 +98,10 @@ append_regions (TfPlate *self, GString *text)
   else if (chosen != NULL)
     {
       const TfMeasure *m = &tf_region_item_get_row (chosen)->measure;
-      g_autofree char *place = tf_chart_dup_place (m->lat_deg, isfinite (m->cmd_deg) ? m->cmd_deg : m->carrington_lon_deg);
-      g_string_append_printf (text, _ ("; chosen: %s at %s"), tf_region_item_get_label (chosen), place);
+      g_autofree char *place = tf_chart_dup_place (
+          m->lat_deg, isfinite (m->cmd_deg) ? m->cmd_deg : m->carrington_lon_deg);
+      g_string_append_printf (text, _ ("; chosen: %s at %s"), tf_region_item_get_label (chosen),
+                              place);
     }
 }
 
@@ -106,13 +114,16 @@ tf_plate_dup_description (TfPlate *self)
   static const char *const looks[] = { N_ ("disk"), N_ ("unrolled"), N_ ("close") };
   g_autofree char *time = tf_time_dup_iso (tf_frame_get_info (frame)->time, 0);
   GString *text = g_string_new (NULL);
-  g_string_append_printf (text, _ ("frame of %s; look: %s; field range ± %.0f G"), time != NULL ? time : _ ("unknown time"),
-                          _ (looks[tf_session_get_view (self->session)->look]), tf_session_get_range (self->session));
+  g_string_append_printf (text, _ ("frame of %s; look: %s; field range ± %.0f G"),
+                          time != NULL ? time : _ ("unknown time"),
+                          _ (looks[tf_session_get_view (self->session)->look]),
+                          tf_session_get_range (self->session));
   append_regions (self, text);
   return g_string_free (text, FALSE);
 }
 
-/* -- following the session ---------------------------------------------------------------------------------- */
+/* -- following the session
+ * ---------------------------------------------------------------------------------- */
 
 static void
 describe (TfPlate *self)
@@ -160,14 +171,20 @@ tf_plate_set_session (TfPlate *self, TfSession *session)
 {
   g_return_if_fail (TF_IS_PLATE (self) && TF_IS_SESSION (session) && self->session == NULL);
   self->session = g_object_ref (session);
-  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "view-changed", G_CALLBACK (picture_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "regions-changed", G_CALLBACK (regions_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "view-changed", G_CALLBACK (picture_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "regions-changed", G_CALLBACK (regions_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self,
+                           G_CONNECT_SWAPPED);
   describe (self);
 }
 
-/* -- the widget ------------------------------------------------------------------------------------------------ */
+/* -- the widget
+ * ------------------------------------------------------------------------------------------------
+ */
 
 static void
 snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
@@ -176,7 +193,8 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   int width = gtk_widget_get_width (widget), height = gtk_widget_get_height (widget);
   graphene_rect_t all = GRAPHENE_RECT_INIT (0, 0, (float)width, (float)height);
   gtk_snapshot_append_color (snapshot, &ground, &all);
-  if (self->session == NULL || tf_session_get_frame (self->session) == NULL || width < 1 || height < 1)
+  if (self->session == NULL || tf_session_get_frame (self->session) == NULL || width < 1
+      || height < 1)
     return;
   double dx, dy;
   const TfVertex *line;
@@ -243,9 +261,9 @@ tf_plate_class_init (TfPlateClass *klass)
   object->finalize = finalize;
   widget->snapshot = snapshot;
   widget->size_allocate = size_allocate;
-  g_object_class_install_property (object, PROP_READOUT,
-                                   g_param_spec_string ("readout", NULL, NULL, NULL,
-                                                        G_PARAM_READABLE | G_PARAM_STATIC_STRINGS));
+  g_object_class_install_property (
+      object, PROP_READOUT,
+      g_param_spec_string ("readout", NULL, NULL, NULL, G_PARAM_READABLE | G_PARAM_STATIC_STRINGS));
   gtk_widget_class_set_css_name (widget, "plate");
   gtk_widget_class_set_accessible_role (widget, GTK_ACCESSIBLE_ROLE_IMG);
 }
@@ -256,6 +274,7 @@ tf_plate_init (TfPlate *self)
   self->readout = dup_readout (self);
   gtk_widget_set_focusable (GTK_WIDGET (self), TRUE);
   gtk_widget_set_overflow (GTK_WIDGET (self), GTK_OVERFLOW_HIDDEN);
-  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Plate"), -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Plate"),
+                                  -1);
   tf_plate_add_tools (self);
 }

@@ -3,10 +3,10 @@
  */
 #pragma once
 
-/* TfPlate: the large picture. It shows the session's frame through the session's view, outlines over it, and turns pointer and keys into
- * calls of the session. The picture is made at the size of the widget from the frame's pyramid; the overlay is a second surface that is
- * shifted while panning and made anew only when scale or outlines change; the line in hand alone is live.
- */
+/* TfPlate: the large picture. It shows the session's frame through the session's view, outlines
+ * over it, and turns pointer and keys into calls of the session. The picture is made at the size
+ * of the widget from the frame's pyramid; the overlay is a second surface that is shifted while
+ * panning and made anew only when scale or outlines change; the line in hand alone is live. */
 
 #include "tf-session.h"
 

@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfPreferences: what the window remembers between days: a key file in the user's configuration folder. Numbers never depend on it. */
+/* TfPreferences: what the window remembers between days: a key file in the user's configuration
+ * folder. Numbers never depend on it. */
 
 #include <glib.h>
 
@@ -11,7 +12,8 @@ G_BEGIN_DECLS
 
 /** tf_preferences_dup: (nullable) the value of a key ("person", "ledger", "palette") */
 char *tf_preferences_dup (const char *key);
-/** tf_preferences_set: NULL takes the key away. A file that cannot be written is no error a person could act upon: it is left. */
+/** tf_preferences_set: NULL takes the key away. A file that cannot be written is no error a
+ * person could act upon: it is left. */
 void tf_preferences_set (const char *key, const char *value);
 
 G_END_DECLS

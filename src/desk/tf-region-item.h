@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfRegionItem: one hint or mark of the frame on the plate, with its verdict under the divides of the moment. */
+/* TfRegionItem: one hint or mark of the frame on the plate, with its verdict under the divides
+ * of the moment. */
 
 #include <glib-object.h>
 

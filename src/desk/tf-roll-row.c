@@ -44,26 +44,30 @@ show_state (TfRollRow *self)
     gtk_widget_remove_css_class (self->stripe, state_classes[k]);
   gtk_widget_add_css_class (self->stripe, state_classes[state]);
   const char *refusal = tf_frame_item_get_row (self->item)->refusal;
-  gtk_widget_set_tooltip_text (GTK_WIDGET (self), refusal != NULL ? refusal : tf_frame_item_get_state_words (self->item));
+  gtk_widget_set_tooltip_text (
+      GTK_WIDGET (self), refusal != NULL ? refusal : tf_frame_item_get_state_words (self->item));
 }
 
 static void
 show (TfRollRow *self)
 {
   const char *day = tf_frame_item_get_day (self->item);
-  g_autofree char *time = tf_frame_item_dup_time (self->item), *counts = tf_frame_item_dup_counts (self->item);
+  g_autofree char *time = tf_frame_item_dup_time (self->item),
+                  *counts = tf_frame_item_dup_counts (self->item);
   gtk_widget_set_visible (GTK_WIDGET (self->day), day != NULL);
   gtk_label_set_label (self->day, day != NULL ? day : "");
   gtk_label_set_label (self->time, time);
   const char *refusal = tf_frame_item_get_row (self->item)->refusal;
   gtk_label_set_label (self->counts, refusal != NULL ? refusal : counts);
   gtk_label_set_lines (self->counts, refusal != NULL ? 3 : 2);
-  gtk_picture_set_paintable (self->picture, GDK_PAINTABLE (tf_frame_item_get_thumbnail (self->item)));
+  gtk_picture_set_paintable (self->picture,
+                             GDK_PAINTABLE (tf_frame_item_get_thumbnail (self->item)));
   show_state (self);
   g_autofree char *name = tf_roll_row_dup_name (self->item);
   GtkWidget *parent = gtk_widget_get_parent (GTK_WIDGET (self));
   if (parent != NULL) /* the list's own row: nothing names it otherwise */
-    gtk_accessible_update_property (GTK_ACCESSIBLE (parent), GTK_ACCESSIBLE_PROPERTY_LABEL, name, -1);
+    gtk_accessible_update_property (GTK_ACCESSIBLE (parent), GTK_ACCESSIBLE_PROPERTY_LABEL, name,
+                                    -1);
 }
 
 void

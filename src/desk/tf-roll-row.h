@@ -3,8 +3,8 @@
  */
 #pragma once
 
-/* TfRollRow: one frame in the roll: a day heading when it is the first of its day, a stripe that tells its state, a small picture, the
- * time and what is on it. */
+/* TfRollRow: one frame in the roll: a day heading when it is the first of its day, a stripe that
+ * tells its state, a small picture, the time and what is on it. */
 
 #include "tf-frame-item.h"
 

@@ -44,7 +44,8 @@ unbind_row (GtkSignalListItemFactory *factory, GtkListItem *item, TfRoll *self)
   tf_roll_row_set_item (TF_ROLL_ROW (gtk_list_item_get_child (item)), NULL);
 }
 
-/* -- selection, both ways ------------------------------------------------------------------------ */
+/* -- selection, both ways
+ * ------------------------------------------------------------------------ */
 
 static void
 selected (TfRoll *self)
@@ -81,8 +82,10 @@ frames_changed (TfRoll *self)
   guint n = g_list_model_get_n_items (tf_session_get_frames (self->session));
   gboolean some = tf_session_get_n_frames (self->session) > 0;
   gtk_stack_set_visible_child_name (self->stack, n > 0 ? "list" : "empty");
-  gtk_label_set_label (self->empty, some ? _ ("No frame in the stretch chosen on the wings. Double-click the wings for all.")
-                                         : _ ("The roll is empty. Add frames, or drop them on the window."));
+  gtk_label_set_label (
+      self->empty,
+      some ? _ ("No frame in the stretch chosen on the wings. Double-click the wings for all.")
+           : _ ("The roll is empty. Add frames, or drop them on the window."));
   frame_changed (self);
 }
 
@@ -95,9 +98,12 @@ tf_roll_set_session (TfRoll *self, TfSession *session)
   gtk_single_selection_set_autoselect (self->selection, FALSE);
   gtk_single_selection_set_can_unselect (self->selection, TRUE);
   gtk_list_view_set_model (self->list, GTK_SELECTION_MODEL (self->selection));
-  g_signal_connect_object (self->selection, "notify::selected-item", G_CALLBACK (selected), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "frames-changed", G_CALLBACK (frames_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (self->selection, "notify::selected-item", G_CALLBACK (selected), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (frame_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frames-changed", G_CALLBACK (frames_changed), self,
+                           G_CONNECT_SWAPPED);
   frames_changed (self);
 }
 

@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfRoll: the time-ordered list of frames at the left of the window. Choosing a row chooses the session's frame. */
+/* TfRoll: the time-ordered list of frames at the left of the window. Choosing a row chooses the
+ * session's frame. */
 
 #include "tf-session.h"
 

@@ -1,7 +1,8 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* What a person does: each deed is handed to the writer; the plate and the roll show it when the ledger has it. */
+/* What a person does: each deed is handed to the writer; the plate and the roll show it when the
+ * ledger has it. */
 
 #include "tf-session-private.h"
 
@@ -41,7 +42,8 @@ chosen_row (TfSession *self)
   return self->region != NULL ? tf_region_item_get_row (self->region) : NULL;
 }
 
-/* -- keep, drop, withdraw ------------------------------------------------------------------------ */
+/* -- keep, drop, withdraw
+ * ------------------------------------------------------------------------ */
 
 gboolean
 tf_session_can_keep (TfSession *self)
@@ -138,13 +140,15 @@ tf_session_withdraw (TfSession *self)
   return push (self, deed);
 }
 
-/* -- note and class ------------------------------------------------------------------------------ */
+/* -- note and class
+ * ------------------------------------------------------------------------------ */
 
 gboolean
 tf_session_set_note (TfSession *self, const char *text)
 {
   g_return_val_if_fail (TF_IS_SESSION (self) && text != NULL, FALSE);
-  if (!tf_session_can_describe (self) || strcmp (chosen_row (self)->note, text) == 0 || !has_person (self))
+  if (!tf_session_can_describe (self) || strcmp (chosen_row (self)->note, text) == 0
+      || !has_person (self))
     return FALSE;
   TfDeed *deed = deed_new (self, TF_DEED_NOTE);
   deed->region = chosen_row (self)->region_key;
@@ -189,7 +193,8 @@ tf_session_set_class (TfSession *self, const char *key)
   return push (self, deed);
 }
 
-/* -- undo and redo -------------------------------------------------------------------------------- */
+/* -- undo and redo
+ * -------------------------------------------------------------------------------- */
 
 gboolean
 tf_session_can_undo (TfSession *self)
@@ -223,13 +228,15 @@ tf_session_redo (TfSession *self)
   return tf_session_can_redo (self) && push (self, deed_new (self, TF_DEED_REDO));
 }
 
-/* -- what came of it ------------------------------------------------------------------------------- */
+/* -- what came of it
+ * ------------------------------------------------------------------------------- */
 
 static void
 say_undone (TfSession *self, const TfDeed *deed)
 {
-  g_autofree char *text = g_strdup_printf (deed->kind == TF_DEED_UNDO ? _ ("Undone: %s") : _ ("Done again: %s"),
-                                           deed->what != NULL ? deed->what : "");
+  g_autofree char *text
+      = g_strdup_printf (deed->kind == TF_DEED_UNDO ? _ ("Undone: %s") : _ ("Done again: %s"),
+                         deed->what != NULL ? deed->what : "");
   tf_session_say (self, text);
 }
 

@@ -1,17 +1,20 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* Drawing: the line in hand, the draft that it becomes, and the measure of either. While the line is drawn it is measured at once, without
- * the outline term; at rest a worker measures again with it, and a measure of an older draft is dropped. The draft is kept in the ledger
- * as a draft, so that it outlives the window; it is a mark only when it was kept.
- */
+/* Drawing: the line in hand, the draft that it becomes, and the measure of either. While the
+ * line is drawn it is measured at once, without the outline term; at rest a worker measures
+ * again with it, and a measure of an older draft is dropped. The draft is kept in the ledger as
+ * a draft, so that it outlives the window; it is a mark only when it was kept. */
 
 #include "tf-session-private.h"
 
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-enum { MIN_VERTICES = 3 };
+enum
+{
+  MIN_VERTICES = 3
+};
 static const double step_min_deg = 0.05;     /* nearer vertices of a freehand line are left out */
 static const double simplify_deg = 0.06;     /* of a finished freehand line */
 static const gint64 slow_measure_us = 30000; /* a line slower than this is measured at rest only */
@@ -81,7 +84,8 @@ tf_session_drop_draft (TfSession *self)
 static void
 store_draft (TfSession *self)
 {
-  if (self->writer == NULL || self->person == NULL || self->frame_item == NULL || !tf_session_is_writable (self))
+  if (self->writer == NULL || self->person == NULL || self->frame_item == NULL
+      || !tf_session_is_writable (self))
     return;
   TfDeed *deed = tf_deed_new (TF_DEED_DRAFT, self->person);
   deed->frame = tf_frame_item_get_row (self->frame_item)->id;
@@ -114,7 +118,8 @@ tf_session_set_tool (TfSession *self, TfTool tool)
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
-/* -- the line in hand --------------------------------------------------------------------------- */
+/* -- the line in hand
+ * --------------------------------------------------------------------------- */
 
 void
 tf_session_draw_to (TfSession *self, double lon_deg, double lat_deg)
@@ -145,7 +150,8 @@ tf_session_take_back_corner (TfSession *self)
   return TRUE;
 }
 
-/* -- measuring ------------------------------------------------------------------------------------ */
+/* -- measuring
+ * ------------------------------------------------------------------------------------ */
 
 static void
 measure_now (TfSession *self, const TfOutline *outline)
@@ -180,14 +186,16 @@ tf_session_measure_line (TfSession *self)
   g_autoptr (GError) error = NULL;
   g_autoptr (TfOutline) outline = NULL;
   if (self->line->len >= MIN_VERTICES)
-    outline = tf_outline_new (time, (const TfVertex *)(gconstpointer)self->line->data, self->line->len, &error);
+    outline = tf_outline_new (time, (const TfVertex *)(gconstpointer)self->line->data,
+                              self->line->len, &error);
   gint64 start = g_get_monotonic_time ();
   if (outline != NULL && !self->slow)
     measure_now (self, outline);
   else if (outline == NULL)
     {
       forget_measure (self);
-      self->measure_problem = g_strdup (error != NULL ? error->message : _ ("Go on round the region."));
+      self->measure_problem
+          = g_strdup (error != NULL ? error->message : _ ("Go on round the region."));
     }
   self->slow = self->slow || g_get_monotonic_time () - start > slow_measure_us;
   tf_session_emit (self, TF_SIGNAL_CHOICE);
@@ -273,7 +281,8 @@ measure_at_rest (TfSession *self)
   g_task_run_in_thread (task, measure_in_thread);
 }
 
-/* -- the draft ------------------------------------------------------------------------------------- */
+/* -- the draft
+ * ------------------------------------------------------------------------------------- */
 
 static gboolean
 holds_region (const TfOutline *outline, TfRegionItem *item)
@@ -286,7 +295,8 @@ holds_region (const TfOutline *outline, TfRegionItem *item)
   return tf_outline_contains (outline, unit);
 }
 
-/* A draft drawn round a hint or mark is offered in its place: the chosen one first. The slip says so and lets it be refused. */
+/* A draft drawn round a hint or mark is offered in its place: the chosen one first. The slip
+ * says so and lets it be refused. */
 static void
 find_replaced (TfSession *self)
 {
@@ -344,8 +354,8 @@ tf_session_finish_line (TfSession *self)
     }
   g_autoptr (GError) error = NULL;
   TfTime time = tf_frame_get_info (self->frame)->time;
-  g_autoptr (TfOutline) outline
-      = tf_outline_new (time, (const TfVertex *)(gconstpointer)self->line->data, self->line->len, &error);
+  g_autoptr (TfOutline) outline = tf_outline_new (
+      time, (const TfVertex *)(gconstpointer)self->line->data, self->line->len, &error);
   gboolean freehand = self->tool == TF_TOOL_OUTLINE;
   g_array_set_size (self->line, 0);
   self->slow = FALSE;
@@ -355,7 +365,8 @@ tf_session_finish_line (TfSession *self)
       tf_session_emit (self, TF_SIGNAL_CHOICE);
       return FALSE;
     }
-  take_draft (self, freehand ? tf_outline_simplify (outline, simplify_deg) : tf_outline_ref (outline));
+  take_draft (self,
+              freehand ? tf_outline_simplify (outline, simplify_deg) : tf_outline_ref (outline));
   store_draft (self);
   return TRUE;
 }

@@ -1,13 +1,17 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* The session and its ledger: opening, reading again after every change (its own and other programs'), all off the main thread. */
+/* The session and its ledger: opening, reading again after every change (its own and other
+ * programs'), all off the main thread. */
 
 #include "tf-session-private.h"
 
 #include <glib/gi18n-lib.h>
 
-enum { WATCH_SECONDS = 2 };
+enum
+{
+  WATCH_SECONDS = 2
+};
 
 /* What one reading brings. */
 typedef struct
@@ -53,8 +57,13 @@ make_dots (const GArray *points, const TfJudge *judge)
     {
       const TfPoint *p = &g_array_index (points, TfPoint, k);
       TfVerdict verdict = tf_judge_point (judge, p);
-      TfWingsDot dot = { .year = p->year, .lat_deg = p->lat_deg, .flux_mx = p->flux_mx, .leading = p->leading,
-                         .verdict = (gint8)verdict.kind, .hint = p->hint, .id = (gint64)k + 1 };
+      TfWingsDot dot = { .year = p->year,
+                         .lat_deg = p->lat_deg,
+                         .flux_mx = p->flux_mx,
+                         .leading = p->leading,
+                         .verdict = (gint8)verdict.kind,
+                         .hint = p->hint,
+                         .id = (gint64)k + 1 };
       g_array_append_val (dots, dot);
     }
   return dots;
@@ -71,12 +80,14 @@ dup_notices (TfLedger *ledger)
   return (char **)g_ptr_array_free (texts, FALSE);
 }
 
-/* Whether the person's last deed can be undone. A name that the ledger does not know yet is not recorded by asking. */
+/* Whether the person's last deed can be undone. A name that the ledger does not know yet is not
+ * recorded by asking. */
 static void
 read_person (Reading *r, TfLedger *ledger)
 {
   g_auto (GStrv) known = tf_ledger_dup_persons (ledger);
-  if (r->person == NULL || known == NULL || !g_strv_contains ((const char *const *)known, r->person))
+  if (r->person == NULL || known == NULL
+      || !g_strv_contains ((const char *const *)known, r->person))
     return;
   gint64 key = tf_ledger_person (ledger, r->person, NULL);
   if (key == 0)
@@ -181,7 +192,8 @@ read_done (GObject *source, GAsyncResult *result, gpointer data)
   TfSession *self = TF_SESSION (source);
   g_autoptr (GError) error = NULL;
   Reading *r = tf_lane_finish (result, &error);
-  if (g_error_matches (error, G_IO_ERROR, G_IO_ERROR_CANCELLED) || g_task_get_cancellable (G_TASK (result)) != self->reading)
+  if (g_error_matches (error, G_IO_ERROR, G_IO_ERROR_CANCELLED)
+      || g_task_get_cancellable (G_TASK (result)) != self->reading)
     {
       g_clear_pointer (&r, reading_free);
       return;
@@ -213,7 +225,8 @@ start_reading (TfSession *self)
   asked->judge = tf_judge_ref (self->judge);
   self->refreshing = TRUE;
   self->refresh_again = self->refresh_all = FALSE;
-  tf_lane_push (self->reader, self, self->reading, read_in_lane, asked, reading_free, reading_free, read_done, NULL);
+  tf_lane_push (self->reader, self, self->reading, read_in_lane, asked, reading_free, reading_free,
+                read_done, NULL);
 }
 
 void
@@ -251,7 +264,8 @@ watch (gpointer data)
 {
   TfSession *self = data;
   if (self->reader != NULL && self->open && !self->refreshing)
-    tf_lane_push (self->reader, self, self->reading, look_in_lane, NULL, NULL, g_free, looked, NULL);
+    tf_lane_push (self->reader, self, self->reading, look_in_lane, NULL, NULL, g_free, looked,
+                  NULL);
   return G_SOURCE_CONTINUE;
 }
 

@@ -47,7 +47,8 @@ struct _TfSession
   gint64 version; /* of the file, as last read */
   guint watch;
   char *person;
-  gboolean wrote; /* the writer knows best what can be undone: only its connection writes under this replica */
+  gboolean
+      wrote; /* the writer knows best what can be undone: only its connection writes under this replica */
   gboolean can_undo, can_redo;
   char *saved;
 
@@ -83,11 +84,11 @@ struct _TfSession
   gboolean replaces;
   guint64 draft_serial;
   gboolean at_rest;
-  gboolean keeping; /* the draft is on its way into the ledger */
+  gboolean keeping;      /* the draft is on its way into the ledger */
   gboolean draft_looked; /* the ledger was asked for a draft on this frame */
-  char *draft_text; /* came before the pixels */
-  gboolean slow;    /* the line in hand is too large to be measured while it is drawn */
-  TfMeasure measure; /* of the line or the draft, when measured */
+  char *draft_text;      /* came before the pixels */
+  gboolean slow;         /* the line in hand is too large to be measured while it is drawn */
+  TfMeasure measure;     /* of the line or the draft, when measured */
   gboolean measured;
   char *measure_problem;
   TfSampleRow sample;

@@ -7,7 +7,10 @@
 
 #include <math.h>
 
-enum { CLOSE_DEGREES = 24 }; /* across, when no region is chosen */
+enum
+{
+  CLOSE_DEGREES = 24
+}; /* across, when no region is chosen */
 static const double range_min = 5, range_max = 5000;
 
 const TfView *
@@ -26,7 +29,8 @@ geometry_of (TfSession *self)
 static void
 fit_close (TfSession *self)
 {
-  double lon = tf_geometry_central_carrington (geometry_of (self)), lat = 0, radius = CLOSE_DEGREES / 2.0;
+  double lon = tf_geometry_central_carrington (geometry_of (self)), lat = 0,
+         radius = CLOSE_DEGREES / 2.0;
   const TfOutline *outline = self->draft;
   if (outline == NULL && self->region != NULL)
     outline = tf_region_item_get_row (self->region)->outline;

@@ -1,7 +1,8 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* The dots of the wings, and the stretch of time picked on them. A dot's id is its place in the list of points, from 1. */
+/* The dots of the wings, and the stretch of time picked on them. A dot's id is its place in the
+ * list of points, from 1. */
 
 #include "tf-session-private.h"
 

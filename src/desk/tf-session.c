@@ -10,14 +10,17 @@
 G_DEFINE_FINAL_TYPE (TfSession, tf_session, G_TYPE_OBJECT)
 
 static const char *const signal_names[] = {
-  [TF_SIGNAL_LEDGER] = "ledger-changed", [TF_SIGNAL_FRAMES] = "frames-changed",
-  [TF_SIGNAL_FRAME] = "frame-changed",   [TF_SIGNAL_VIEW] = "view-changed",
-  [TF_SIGNAL_REGIONS] = "regions-changed", [TF_SIGNAL_CHOICE] = "choice-changed",
-  [TF_SIGNAL_POINTS] = "points-changed", [TF_SIGNAL_STATUS] = "status-changed",
+  [TF_SIGNAL_LEDGER] = "ledger-changed",       [TF_SIGNAL_FRAMES] = "frames-changed",
+  [TF_SIGNAL_FRAME] = "frame-changed",         [TF_SIGNAL_VIEW] = "view-changed",
+  [TF_SIGNAL_REGIONS] = "regions-changed",     [TF_SIGNAL_CHOICE] = "choice-changed",
+  [TF_SIGNAL_POINTS] = "points-changed",       [TF_SIGNAL_STATUS] = "status-changed",
   [TF_SIGNAL_PERSON_NEEDED] = "person-needed",
 };
 
-enum { DEFAULT_RANGE_GAUSS = 200 };
+enum
+{
+  DEFAULT_RANGE_GAUSS = 200
+};
 
 void
 tf_session_emit (TfSession *self, TfSessionSignal signal)
@@ -79,7 +82,8 @@ tf_session_class_init (TfSessionClass *klass)
   object->dispose = dispose;
   object->finalize = finalize;
   for (guint k = 0; k < G_N_ELEMENTS (signal_names); k++)
-    g_signal_new (signal_names[k], TF_TYPE_SESSION, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL, G_TYPE_NONE, 0);
+    g_signal_new (signal_names[k], TF_TYPE_SESSION, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL,
+                  G_TYPE_NONE, 0);
   g_signal_new ("message", TF_TYPE_SESSION, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL, G_TYPE_NONE, 1,
                 G_TYPE_STRING);
 }

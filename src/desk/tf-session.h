@@ -3,21 +3,20 @@
  */
 #pragma once
 
-/* TfSession: what is open and chosen in one window. Main thread only. Widgets show it and change it through these functions; they
- * never speak to each other. Nothing here names a widget.
+/* TfSession: what is open and chosen in one window. Main thread only. Widgets show it and change
+ * it through these functions; they never speak to each other. Nothing here names a widget.
  *
  * Signals (none has arguments unless given):
- *   "ledger-changed"   path, whether it is open, read-only, person, what opening found
- *   "frames-changed"   the list of frames
- *   "frame-changed"    the chosen frame, or its pixels came, or could not be had
- *   "view-changed"     what part is seen, range, palette
- *   "regions-changed"  hints and marks on the plate
- *   "choice-changed"   the chosen region, the draft, the tool, the measure of either
- *   "points-changed"   the dots of the wings and the stretch picked on them
- *   "status-changed"   busy, problem, pending deeds, undo and redo
- *   "message" (text)   something to be said once
- *   "person-needed"    a deed waits for the name of who does it
- */
+ * "ledger-changed"   path, whether it is open, read-only, person, what opening found
+ * "frames-changed"   the list of frames
+ * "frame-changed"    the chosen frame, or its pixels came, or could not be had
+ * "view-changed"     what part is seen, range, palette
+ * "regions-changed"  hints and marks on the plate
+ * "choice-changed"   the chosen region, the draft, the tool, the measure of either
+ * "points-changed"   the dots of the wings and the stretch picked on them
+ * "status-changed"   busy, problem, pending deeds, undo and redo
+ * "message" (text)   something to be said once
+ * "person-needed"    a deed waits for the name of who does it */
 
 #include <gtk/gtk.h>
 
@@ -50,7 +49,8 @@ const char *tf_session_get_ledger_path (TfSession *session);
 /** tf_session_get_ledger_name: without folder and ending; NULL without a ledger. */
 char *tf_session_dup_ledger_name (TfSession *session);
 gboolean tf_session_has_ledger (TfSession *session);
-/** tf_session_get_ledger_problem: why it could not be opened, or why nothing can be written; NULL. */
+/** tf_session_get_ledger_problem: why it could not be opened, or why nothing can be written;
+ * NULL. */
 const char *tf_session_get_ledger_problem (TfSession *session);
 gboolean tf_session_is_writable (TfSession *session);
 const char *tf_session_get_person (TfSession *session);
@@ -59,10 +59,12 @@ void tf_session_set_person (TfSession *session, const char *name);
 void tf_session_refresh (TfSession *session, gboolean all);
 
 /* -- frames (tf-session-frames.c) */
-/** tf_session_get_frames: of TfFrameItem, in time order, those of the stretch picked on the wings. */
+/** tf_session_get_frames: of TfFrameItem, in time order, those of the stretch picked on the
+ * wings. */
 GListModel *tf_session_get_frames (TfSession *session);
 guint tf_session_get_n_frames (TfSession *session);
-/** tf_session_add_frames: files and folders; into the ledger when one is open, else only to look at. */
+/** tf_session_add_frames: files and folders; into the ledger when one is open, else only to look
+ * at. */
 void tf_session_add_frames (TfSession *session, char *const *paths);
 TfFrameItem *tf_session_get_frame_item (TfSession *session);
 void tf_session_choose_frame (TfSession *session, TfFrameItem *item);
@@ -72,13 +74,15 @@ TfFrame *tf_session_get_frame (TfSession *session);
 /** tf_session_get_frame_problem: why the chosen frame cannot be shown */
 const char *tf_session_get_frame_problem (TfSession *session);
 gboolean tf_session_is_loading (TfSession *session);
-/** tf_session_get_progress: (nullable): words of the long work under way; @share 0-1 or negative when unknown */
+/** tf_session_get_progress: (nullable): words of the long work under way; @share 0-1 or negative
+ * when unknown */
 const char *tf_session_get_progress (TfSession *session, double *share);
 void tf_session_cancel (TfSession *session);
 /** tf_session_get_feed_trouble: (nullable): what could not be taken in, one sentence a line */
 const char *tf_session_get_feed_trouble (TfSession *session);
 void tf_session_forget_feed_trouble (TfSession *session);
-/** tf_session_get_newest: time of the newest frame and the usual step between frames, s; unknown and NaN */
+/** tf_session_get_newest: time of the newest frame and the usual step between frames, s; unknown
+ * and NaN */
 TfTime tf_session_get_newest (TfSession *session, double *cadence_s);
 
 /* -- the view (tf-session-view.c) */
@@ -112,7 +116,8 @@ void tf_session_set_tool (TfSession *session, TfTool tool);
 void tf_session_draw_to (TfSession *session, double lon_deg, double lat_deg);
 /** tf_session_get_line: borrowed vertices of the line in hand */
 void tf_session_get_line (TfSession *session, const TfVertex **line, guint *n);
-/** tf_session_measure_line: measures the line in hand as if it were closed; called once a frame of animation */
+/** tf_session_measure_line: measures the line in hand as if it were closed; called once a frame
+ * of animation */
 void tf_session_measure_line (TfSession *session);
 /** tf_session_finish_line: closes it: the draft. FALSE when it is no outline. */
 gboolean tf_session_finish_line (TfSession *session);
@@ -137,7 +142,8 @@ gboolean tf_session_is_at_rest (TfSession *session);
 const char *tf_session_get_method (TfSession *session);
 const TfDivides *tf_session_get_divides (TfSession *session);
 
-/* -- deeds (tf-session-deeds.c); FALSE: not possible now (the actions ask the tf_session_can_ twins) */
+/* -- deeds (tf-session-deeds.c); FALSE: not possible now (the actions ask the tf_session_can_
+ * twins) */
 gboolean tf_session_can_keep (TfSession *session);
 gboolean tf_session_keep (TfSession *session);
 gboolean tf_session_can_drop (TfSession *session);
@@ -159,7 +165,8 @@ void tf_session_retry (TfSession *session);
 void tf_session_give_up (TfSession *session);
 
 /* -- the wings (tf-session-wings.c) */
-/** tf_session_get_dots: (element-type TfWingsDot): those shown; @n_hidden: (out): hints not shown */
+/** tf_session_get_dots: (element-type TfWingsDot): those shown; @n_hidden: (out): hints not shown
+ */
 GArray *tf_session_get_dots (TfSession *session, guint *n_hidden);
 guint tf_session_get_n_marks (TfSession *session);
 gboolean tf_session_get_show_hints (TfSession *session);

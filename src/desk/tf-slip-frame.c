@@ -38,7 +38,9 @@ append_noise (GString *text, TfFrame *frame)
     return;
   gboolean map = tf_geometry_is_map (tf_frame_get_geometry (frame));
   g_autofree char *noise = tf_words_dup_number (tf_frame_noise_at (frame, map ? 0 : 1), 1);
-  g_string_append_printf (text, map ? _ ("\nnoise %s G at the equator") : _ ("\nnoise %s G at the disk’s centre"), noise);
+  g_string_append_printf (
+      text, map ? _ ("\nnoise %s G at the equator") : _ ("\nnoise %s G at the disk’s centre"),
+      noise);
 }
 
 static char *
@@ -46,9 +48,11 @@ dup_facts (const TfFrameRow *row, TfFrame *frame)
 {
   const TfFrameInfo *info = row->info;
   GString *text = g_string_new (NULL);
-  g_string_append_printf (text, "%s · %s", tf_kind_name (info->kind), info->instrument != NULL ? info->instrument : "");
+  g_string_append_printf (text, "%s · %s", tf_kind_name (info->kind),
+                          info->instrument != NULL ? info->instrument : "");
   if (info->geometry.width > 0)
-    g_string_append_printf (text, _ ("\n%u × %u pixels"), info->geometry.width, info->geometry.height);
+    g_string_append_printf (text, _ ("\n%u × %u pixels"), info->geometry.width,
+                            info->geometry.height);
   if (isfinite (info->geometry.observer.b0_deg) && !tf_geometry_is_map (&info->geometry))
     {
       g_autofree char *vantage = tf_observer_dup_vantage (&info->geometry.observer);
@@ -56,7 +60,8 @@ dup_facts (const TfFrameRow *row, TfFrame *frame)
       g_autofree char *l0 = tf_words_dup_number (info->geometry.observer.carrington_lon_deg, 1);
       g_string_append_printf (text, _ ("\nseen from %s · B0 %s° · L0 %s°"), vantage, b0, l0);
     }
-  static const char *const fields[] = { N_ ("field of unknown direction"), N_ ("line-of-sight field"), N_ ("radial field") };
+  static const char *const fields[]
+      = { N_ ("field of unknown direction"), N_ ("line-of-sight field"), N_ ("radial field") };
   g_string_append_printf (text, "\n%s", _ (fields[info->field]));
   append_noise (text, frame);
   if (info->simulated)
@@ -73,10 +78,13 @@ next_step (TfSlipFrame *self)
     {
       g_autoptr (TfRegionItem) item = g_list_model_get_item (regions, k);
       if (tf_region_item_get_row (item)->is_hint)
-        return _ ("Press . for the next hint, then K to keep it or X to drop it. Press O and draw round a region to mark it yourself.");
+        return _ ("Press . for the next hint, then K to keep it or X to drop it. Press O and draw "
+                  "round a region to mark it yourself.");
     }
-  return n > 0 ? _ ("Click a region to see what is known of it. Press O and draw round another to mark it.")
-               : _ ("Press O and draw round a region, or P and click its corners. Its numbers stand here while you draw.");
+  return n > 0 ? _ ("Click a region to see what is known of it. Press O and draw round another to "
+                    "mark it.")
+               : _ ("Press O and draw round a region, or P and click its corners. Its numbers "
+                    "stand here while you draw.");
 }
 
 static void

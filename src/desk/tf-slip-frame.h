@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfSlipFrame: what the slip shows when no region is chosen: the frame itself, its cautions and repairs, and what to do next. */
+/* TfSlipFrame: what the slip shows when no region is chosen: the frame itself, its cautions and
+ * repairs, and what to do next. */
 
 #include "tf-session.h"
 

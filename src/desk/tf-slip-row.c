@@ -23,7 +23,8 @@ set_label (GtkLabel *label, const char *text)
 }
 
 void
-tf_slip_row_set (TfSlipRow *self, const char *name, const char *value, const char *under, const char *how)
+tf_slip_row_set (TfSlipRow *self, const char *name, const char *value, const char *under,
+                 const char *how)
 {
   g_return_if_fail (TF_IS_SLIP_ROW (self) && name != NULL && value != NULL);
   set_label (self->name, name);
@@ -32,7 +33,8 @@ tf_slip_row_set (TfSlipRow *self, const char *name, const char *value, const cha
   gtk_widget_set_visible (GTK_WIDGET (self->under), under != NULL && under[0] != '\0');
   set_label (self->how, how != NULL ? how : "");
   g_autofree char *label = g_strdup_printf (_ ("%s: %s. How it was got"), name, value);
-  gtk_accessible_update_property (GTK_ACCESSIBLE (self->button), GTK_ACCESSIBLE_PROPERTY_LABEL, label, -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self->button), GTK_ACCESSIBLE_PROPERTY_LABEL,
+                                  label, -1);
 }
 
 const char *
@@ -57,16 +59,17 @@ static void
 size_allocate (GtkWidget *widget, int width, int height, int baseline)
 {
   TfSlipRow *self = TF_SLIP_ROW (widget);
-  gtk_widget_size_allocate (GTK_WIDGET (self->button), &(GtkAllocation){ 0, 0, width, height }, baseline);
+  gtk_widget_size_allocate (GTK_WIDGET (self->button), &(GtkAllocation){ 0, 0, width, height },
+                            baseline);
   gtk_popover_present (self->popover);
 }
 
 static void
-measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural, int *minimum_baseline,
-         int *natural_baseline)
+measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural,
+         int *minimum_baseline, int *natural_baseline)
 {
-  gtk_widget_measure (GTK_WIDGET (TF_SLIP_ROW (widget)->button), orientation, for_size, minimum, natural, minimum_baseline,
-                      natural_baseline);
+  gtk_widget_measure (GTK_WIDGET (TF_SLIP_ROW (widget)->button), orientation, for_size, minimum,
+                      natural, minimum_baseline, natural_baseline);
 }
 
 static GtkSizeRequestMode

@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* TfSlipRow: one number of the slip: its name, its value, what stands under it; pressed, it opens how the number was got. */
+/* TfSlipRow: one number of the slip: its name, its value, what stands under it; pressed, it
+ * opens how the number was got. */
 
 #include <gtk/gtk.h>
 
@@ -13,7 +14,8 @@ G_BEGIN_DECLS
 G_DECLARE_FINAL_TYPE (TfSlipRow, tf_slip_row, TF, SLIP_ROW, GtkWidget)
 
 /** tf_slip_row_set: (nullable) @under */
-void tf_slip_row_set (TfSlipRow *row, const char *name, const char *value, const char *under, const char *how);
+void tf_slip_row_set (TfSlipRow *row, const char *name, const char *value, const char *under,
+                      const char *how);
 const char *tf_slip_row_get_value (TfSlipRow *row);
 const char *tf_slip_row_get_how (TfSlipRow *row);
 

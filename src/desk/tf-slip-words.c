@@ -11,7 +11,8 @@
 #include "tf-joy.h"
 #include "tf-number.h"
 
-/* -- small words --------------------------------------------------------------------------------- */
+/* -- small words
+ * --------------------------------------------------------------------------------- */
 
 char *
 tf_words_dup_number (double value, guint decimals)
@@ -30,7 +31,8 @@ char *
 tf_words_dup_signed (double value, guint decimals)
 {
   g_autofree char *number = tf_words_dup_number (value, decimals);
-  return value >= 0.5 * pow (10, -(double)decimals) ? g_strconcat ("+", number, NULL) : g_steal_pointer (&number);
+  return value >= 0.5 * pow (10, -(double)decimals) ? g_strconcat ("+", number, NULL)
+                                                    : g_steal_pointer (&number);
 }
 
 char *
@@ -41,7 +43,8 @@ tf_words_dup_place (const TfMeasure *m)
   if (isfinite (m->cmd_deg))
     return tf_chart_dup_place (m->lat_deg, m->cmd_deg);
   g_autofree char *lon = tf_words_dup_number (m->carrington_lon_deg, 0);
-  return g_strdup_printf (_ ("%s%.0f, Carrington %s°"), m->lat_deg < 0 ? _ ("S") : _ ("N"), fabs (m->lat_deg), lon);
+  return g_strdup_printf (_ ("%s%.0f, Carrington %s°"), m->lat_deg < 0 ? _ ("S") : _ ("N"),
+                          fabs (m->lat_deg), lon);
 }
 
 char *
@@ -111,7 +114,8 @@ const char *
 tf_line_name (TfLine line)
 {
   static const char *const names[TF_N_LINES]
-      = { N_ ("axis tilt"), N_ ("leading"), N_ ("following"), N_ ("separation"), N_ ("shape"), N_ ("floor") };
+      = { N_ ("axis tilt"),  N_ ("leading"), N_ ("following"),
+          N_ ("separation"), N_ ("shape"),   N_ ("floor") };
   return _ (names[line]);
 }
 
@@ -139,13 +143,15 @@ dup_flux_bare (double mx)
   return text;
 }
 
-/* -- values ------------------------------------------------------------------------------------------ */
+/* -- values
+ * ------------------------------------------------------------------------------------------ */
 
 static char *
 value_tilt (const TfMeasure *m)
 {
   if (!isfinite (m->axis_tilt_deg))
-    return isfinite (m->axis_bearing_deg) ? g_strdup (_ ("none: straddles the equator")) : g_strdup ("—");
+    return isfinite (m->axis_bearing_deg) ? g_strdup (_ ("none: straddles the equator"))
+                                          : g_strdup ("—");
   g_autofree char *tilt = tf_words_dup_signed (m->axis_tilt_deg, 1);
   g_autofree char *sigma = tf_words_dup_number (m->tilt_terms.total, 1);
   return g_strdup_printf ("%s° ± %s°", tilt, sigma);
@@ -166,7 +172,8 @@ value_separation (const TfMeasure *m)
 {
   if (!isfinite (m->separation_deg))
     return g_strdup ("—");
-  g_autofree char *deg = tf_words_dup_number (m->separation_deg, 1), *mm = tf_words_dup_number (m->separation_mm, 0);
+  g_autofree char *deg = tf_words_dup_number (m->separation_deg, 1),
+                  *mm = tf_words_dup_number (m->separation_mm, 0);
   return g_strdup_printf (_ ("%s° · %s Mm"), deg, mm);
 }
 
@@ -181,7 +188,8 @@ static char *
 value_floor (const TfMeasure *m)
 {
   g_autofree char *floor = tf_words_dup_number (m->floor_gauss, 0);
-  return g_strdup_printf (m->floor_kind == TF_FLOOR_EVEN ? _ ("even, %s G") : _ ("local, %s G"), floor);
+  return g_strdup_printf (m->floor_kind == TF_FLOOR_EVEN ? _ ("even, %s G") : _ ("local, %s G"),
+                          floor);
 }
 
 char *
@@ -207,14 +215,17 @@ tf_line_dup_value (TfLine line, const TfReading *r)
     }
 }
 
-/* -- what stands under them ------------------------------------------------------------------------------ */
+/* -- what stands under them
+ * ------------------------------------------------------------------------------ */
 
 static void
 append_witnesses (GString *text, const TfMeasure *m)
 {
-  g_string_append (text, m->leading_sure ? _ ("\nleads, sure: witnesses") : _ ("\nleads, unsure: witnesses"));
+  g_string_append (text, m->leading_sure ? _ ("\nleads, sure: witnesses")
+                                         : _ ("\nleads, unsure: witnesses"));
   for (guint k = 0; k < G_N_ELEMENTS (m->witnesses); k++)
-    g_string_append_printf (text, " %s", m->witnesses[k] == TF_WITNESS_ABSENT ? "–" : sign_of (m->witnesses[k]));
+    g_string_append_printf (text, " %s",
+                            m->witnesses[k] == TF_WITNESS_ABSENT ? "–" : sign_of (m->witnesses[k]));
 }
 
 static char *
@@ -223,7 +234,8 @@ under_tilt (const TfReading *r)
   const TfMeasure *m = r->measure;
   double expected, scatter;
   g_autofree char *noise = tf_words_dup_number (m->tilt_terms.noise, 1);
-  g_autofree char *outline = r->at_rest ? tf_words_dup_number (m->tilt_terms.outline, 1) : g_strdup ("…");
+  g_autofree char *outline
+      = r->at_rest ? tf_words_dup_number (m->tilt_terms.outline, 1) : g_strdup ("…");
   g_autofree char *floor = tf_words_dup_number (m->tilt_terms.floor, 1);
   GString *text = g_string_new (NULL);
   tf_joy_expected (m->lat_deg, m->separation_deg, &expected, &scatter);
@@ -244,7 +256,8 @@ under_flux (const TfMeasure *m, gboolean leading)
     return NULL;
   g_autofree char *sigma = dup_flux_bare (pole->flux_sigma_mx);
   GString *text = g_string_new (NULL);
-  g_string_append_printf (text, _ ("± %s · %.0f %% of the flux"), sigma, 100 * pole->flux_mx / m->flux_unsigned_mx);
+  g_string_append_printf (text, _ ("± %s · %.0f %% of the flux"), sigma,
+                          100 * pole->flux_mx / m->flux_unsigned_mx);
   if (leading && m->leading_polarity != 0)
     append_witnesses (text, m);
   return g_string_free (text, FALSE);
@@ -256,7 +269,8 @@ under_separation (const TfMeasure *m)
   if (!isfinite (m->separation_deg))
     return NULL;
   g_autofree char *deg = tf_words_dup_number (m->separation_sigma_deg, 2);
-  g_autofree char *mm = tf_words_dup_number (m->separation_sigma_deg * m->separation_mm / m->separation_deg, 1);
+  g_autofree char *mm
+      = tf_words_dup_number (m->separation_sigma_deg * m->separation_mm / m->separation_deg, 1);
   return g_strdup_printf (_ ("± %s° · ± %s Mm"), deg, mm);
 }
 
@@ -264,14 +278,16 @@ static char *
 under_shape (const TfMeasure *m)
 {
   g_autofree char *compactness = tf_words_dup_number (m->compactness, 2);
-  g_autofree char *pieces = g_strdup_printf (ngettext ("%u piece", "%u pieces", m->pieces), m->pieces);
+  g_autofree char *pieces
+      = g_strdup_printf (ngettext ("%u piece", "%u pieces", m->pieces), m->pieces);
   return g_strdup_printf (_ ("compactness %s · %s"), compactness, pieces);
 }
 
 static char *
 under_floor (const TfMeasure *m)
 {
-  g_autofree char *noise = tf_words_dup_number (m->noise_gauss, 1), *mu = tf_words_dup_number (m->mu, 2);
+  g_autofree char *noise = tf_words_dup_number (m->noise_gauss, 1),
+                  *mu = tf_words_dup_number (m->mu, 2);
   const char *why = m->floor_kind == TF_FLOOR_LOCAL ? _ ("of this single look\n") : "";
   return g_strdup_printf (_ ("%snoise %s G · μ %s"), why, noise, mu);
 }
@@ -299,34 +315,50 @@ tf_line_dup_under (TfLine line, const TfReading *r)
     }
 }
 
-/* -- how they were got ---------------------------------------------------------------------------------------- */
+/* -- how they were got
+ * ---------------------------------------------------------------------------------------- */
 
 static const char *const how_texts[TF_N_LINES] = {
-  [TF_LINE_TILT] = N_ ("Angle of the axis from the following to the leading pole against the parallel, planar with the cosine of the mean "
-                       "latitude; positive means the leader is nearer to the equator, in both hemispheres. Its uncertainty: noise "
-                       "(every pixel that may cross the floor counted), outline (16 fixed deformations of it), floor (20 % up and down), in quadrature."),
-  [TF_LINE_LEADING] = N_ ("Sum of field times area over the pixels of that polarity above the floor, inside the outline. The uncertainty holds "
-                          "noise, outline and floor.\n\nThe leading polarity is the one whose pole lies further west. Three witnesses tell it "
-                          "apart from each other: the flux centroids; the centroids of the field above three times the floor; the "
-                          "western of the two strongest single-polarity pieces. It is sure when all agree and the poles are further "
+  [TF_LINE_TILT] = N_ ("Angle of the axis from the following to the leading pole against the "
+                       "parallel, planar with the cosine of the mean "
+                       "latitude; positive means the leader is nearer to the equator, in both "
+                       "hemispheres. Its uncertainty: noise "
+                       "(every pixel that may cross the floor counted), outline (16 fixed "
+                       "deformations of it), floor (20 % up and down), in quadrature."),
+  [TF_LINE_LEADING] = N_ ("Sum of field times area over the pixels of that polarity above the "
+                          "floor, inside the outline. The uncertainty holds "
+                          "noise, outline and floor.\n\nThe leading polarity is the one whose pole "
+                          "lies further west. Three witnesses tell it "
+                          "apart from each other: the flux centroids; the centroids of the field "
+                          "above three times the floor; the "
+                          "western of the two strongest single-polarity pieces. It is sure when "
+                          "all agree and the poles are further "
                           "apart in longitude than twice the uncertainty."),
-  [TF_LINE_FOLLOWING] = N_ ("Sum of field times area over the pixels of that polarity above the floor, inside the outline. The uncertainty "
+  [TF_LINE_FOLLOWING] = N_ ("Sum of field times area over the pixels of that polarity above the "
+                            "floor, inside the outline. The uncertainty "
                             "holds noise, outline and floor."),
-  [TF_LINE_SEPARATION] = N_ ("Great-circle distance between the flux-weighted centroids of the two polarities, as unit vectors on the Sun; "
+  [TF_LINE_SEPARATION] = N_ ("Great-circle distance between the flux-weighted centroids of the two "
+                             "polarities, as unit vectors on the Sun; "
                              "lengths on a sphere of 695.7 Mm (IAU 2015 Resolution B3)."),
-  [TF_LINE_SHAPE] = N_ ("Imbalance: (positive − negative) / (positive + negative flux). Compactness: separation / sum of the two rms radii; below "
-                        "0.8 the poles overlap, below 0.5 the tilt is unsure. Pieces: connected parts of one polarity with at least 15 % of the flux."),
-  [TF_LINE_FLOOR] = N_ ("Only pixels stronger than the floor count. A local floor is three times the noise at that place, the default for a "
-                        "single look; towards the limb it keeps less of the same region. Follow, Laws and export use one even floor for a whole study. "
-                        "The noise is 1.4826 × the median absolute deviation of weak pixels by rings of μ; the header’s figure is not trusted."),
+  [TF_LINE_SHAPE] = N_ ("Imbalance: (positive − negative) / (positive + negative flux). "
+                        "Compactness: separation / sum of the two rms radii; below "
+                        "0.8 the poles overlap, below 0.5 the tilt is unsure. Pieces: connected "
+                        "parts of one polarity with at least 15 % of the flux."),
+  [TF_LINE_FLOOR] = N_ ("Only pixels stronger than the floor count. A local floor is three times "
+                        "the noise at that place, the default for a "
+                        "single look; towards the limb it keeps less of the same region. Follow, "
+                        "Laws and export use one even floor for a whole study. "
+                        "The noise is 1.4826 × the median absolute deviation of weak pixels by "
+                        "rings of μ; the header’s figure is not trusted."),
 };
 
 static void
 append_source (GString *text, TfLine line)
 {
   if (line == TF_LINE_TILT && tf_joy_relations[0].name != NULL)
-    g_string_append_printf (text, _ ("\n\nExpected tilt: Joy’s law after %s; the scatter is wider for close poles."),
-                            tf_joy_relations[0].name);
+    g_string_append_printf (
+        text, _ ("\n\nExpected tilt: Joy’s law after %s; the scatter is wider for close poles."),
+        tf_joy_relations[0].name);
 }
 
 char *
@@ -336,10 +368,14 @@ tf_line_dup_how (TfLine line, const TfReading *r)
   GString *text = g_string_new (_ (how_texts[line]));
   append_source (text, line);
   g_autofree char *floor = tf_words_dup_number (m->floor_gauss, 1);
-  g_string_append_printf (text, _ ("\n\nPixels above the floor: %u positive, %u negative."), m->positive.pixels,
-                          m->negative.pixels);
-  g_string_append_printf (text, m->floor_kind == TF_FLOOR_EVEN ? _ ("\nFloor: even, %s G.") : _ ("\nFloor: local, %s G here."), floor);
-  static const char *const used[] = { N_ ("radial (line of sight / μ)"), N_ ("as observed"), N_ ("potential-field estimate") };
+  g_string_append_printf (text, _ ("\n\nPixels above the floor: %u positive, %u negative."),
+                          m->positive.pixels, m->negative.pixels);
+  g_string_append_printf (text,
+                          m->floor_kind == TF_FLOOR_EVEN ? _ ("\nFloor: even, %s G.")
+                                                         : _ ("\nFloor: local, %s G here."),
+                          floor);
+  static const char *const used[]
+      = { N_ ("radial (line of sight / μ)"), N_ ("as observed"), N_ ("potential-field estimate") };
   g_string_append_printf (text, _ ("\nField used: %s."), _ (used[m->field_used]));
   if (!isfinite (m->scale))
     g_string_append (text, _ ("\nThe instrument’s field is not scaled."));

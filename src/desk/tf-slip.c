@@ -43,18 +43,22 @@ set_label (GtkLabel *label, const char *text)
     gtk_label_set_label (label, text != NULL ? text : "");
 }
 
-/* -- the head ---------------------------------------------------------------------------------------- */
+/* -- the head
+ * ---------------------------------------------------------------------------------------- */
 
 static void
 show_replaces (TfSlip *self)
 {
-  TfRegionItem *replaced = tf_session_get_draft (self->session) != NULL ? tf_session_get_replaced (self->session) : NULL;
+  TfRegionItem *replaced = tf_session_get_draft (self->session) != NULL
+                               ? tf_session_get_replaced (self->session)
+                               : NULL;
   gtk_widget_set_visible (GTK_WIDGET (self->replaces), replaced != NULL);
   if (replaced == NULL)
     return;
   gboolean hint = tf_region_item_get_row (replaced)->is_hint;
-  g_autofree char *text = g_strdup_printf (hint ? _ ("in place of the %s inside it") : _ ("in place of %s"),
-                                           tf_region_item_get_label (replaced));
+  g_autofree char *text
+      = g_strdup_printf (hint ? _ ("in place of the %s inside it") : _ ("in place of %s"),
+                         tf_region_item_get_label (replaced));
   gtk_check_button_set_label (self->replaces, text);
   gtk_check_button_set_active (self->replaces, tf_session_get_replaces (self->session));
 }
@@ -63,7 +67,8 @@ show_replaces (TfSlip *self)
 static const char *
 origin_words (const char *origin)
 {
-  static const char *const names[] = { N_ ("kept as hinted"), N_ ("changed"), N_ ("drawn new"), N_ ("outside") };
+  static const char *const names[]
+      = { N_ ("kept as hinted"), N_ ("changed"), N_ ("drawn new"), N_ ("outside") };
   for (guint k = 0; k < G_N_ELEMENTS (names); k++)
     if (strcmp (names[k], origin) == 0)
       return _ (names[k]);
@@ -93,12 +98,17 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
   g_autofree char *longitude = measure != NULL ? tf_words_dup_longitude (measure) : NULL;
   g_autofree char *origin = NULL;
   if (row == NULL)
-    origin = g_strdup (tf_session_get_draft (self->session) != NULL ? _ ("not kept yet") : _ ("close the line to make a draft"));
+    origin = g_strdup (tf_session_get_draft (self->session) != NULL
+                           ? _ ("not kept yet")
+                           : _ ("close the line to make a draft"));
   else if (row->is_hint)
-    origin = g_strdup (row->unipolar ? _ ("a hint of one polarity · nobody has judged it") : _ ("a hint · nobody has judged it"));
+    origin = g_strdup (row->unipolar ? _ ("a hint of one polarity · nobody has judged it")
+                                     : _ ("a hint · nobody has judged it"));
   else
     origin = g_strdup_printf ("%s · %s", origin_words (row->origin), row->person);
-  set_label (self->title, row == NULL ? draft_title (self) : row->is_hint ? _ ("Hint") : row->region);
+  set_label (self->title, row == NULL    ? draft_title (self)
+                          : row->is_hint ? _ ("Hint")
+                                         : row->region);
   set_label (self->place, place);
   set_label (self->longitude, longitude);
   set_label (self->origin, origin);
@@ -109,13 +119,17 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
   show_replaces (self);
 }
 
-/* -- dial, verdict, numbers ----------------------------------------------------------------------------- */
+/* -- dial, verdict, numbers
+ * ----------------------------------------------------------------------------- */
 
 static void
 show_dial (TfSlip *self, const TfMeasure *m, const TfVerdict *verdict)
 {
-  TfDial dial = { .bearing_deg = m->axis_bearing_deg, .sigma_deg = m->tilt_terms.total, .lat_deg = m->lat_deg,
-                  .leading_polarity = m->leading_polarity, .expected = verdict->expected };
+  TfDial dial = { .bearing_deg = m->axis_bearing_deg,
+                  .sigma_deg = m->tilt_terms.total,
+                  .lat_deg = m->lat_deg,
+                  .leading_polarity = m->leading_polarity,
+                  .expected = verdict->expected };
   tf_joy_expected (m->lat_deg, m->separation_deg, &dial.joy_deg, &dial.joy_scatter_deg);
   dial.joy_name = self->joy_name;
   memcpy (dial.witnesses, m->witnesses, sizeof dial.witnesses);
@@ -125,9 +139,11 @@ show_dial (TfSlip *self, const TfMeasure *m, const TfVerdict *verdict)
 static void
 show_verdict (TfSlip *self, const TfVerdict *verdict)
 {
-  static const TfDiamond signs[] = { [TF_VERDICT_CANNOT_SAY] = TF_DIAMOND_HOLLOW, [TF_VERDICT_KEEPS] = TF_DIAMOND_PLAIN,
+  static const TfDiamond signs[] = { [TF_VERDICT_CANNOT_SAY] = TF_DIAMOND_HOLLOW,
+                                     [TF_VERDICT_KEEPS] = TF_DIAMOND_PLAIN,
                                      [TF_VERDICT_BREAKS] = TF_DIAMOND_STRUCK };
-  g_autofree char *sentence = tf_verdict_dup_text (verdict, tf_session_get_sample (self->session), FALSE);
+  g_autofree char *sentence
+      = tf_verdict_dup_text (verdict, tf_session_get_sample (self->session), FALSE);
   tf_verdict_sign_set (self->sign, signs[verdict->kind]);
   g_autofree char *said = NULL, *why = NULL;
   tf_words_split_verdict (sentence, &said, &why);
@@ -155,11 +171,15 @@ static void
 show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
 {
   TfVerdict verdict = tf_session_get_verdict (self->session);
-  TfReading reading = { .measure = m, .verdict = &verdict, .row = tf_session_get_sample (self->session),
-                        .method = method, .at_rest = tf_session_is_at_rest (self->session) };
+  TfReading reading = { .measure = m,
+                        .verdict = &verdict,
+                        .row = tf_session_get_sample (self->session),
+                        .method = method,
+                        .at_rest = tf_session_is_at_rest (self->session) };
   for (guint k = 0; k < TF_N_LINES; k++)
     {
-      g_autofree char *value = tf_line_dup_value (k, &reading), *under = tf_line_dup_under (k, &reading);
+      g_autofree char *value = tf_line_dup_value (k, &reading),
+                      *under = tf_line_dup_under (k, &reading);
       g_autofree char *how = tf_line_dup_how (k, &reading);
       tf_slip_row_set (self->row[k], tf_line_name (k), value, under, how);
     }
@@ -168,7 +188,8 @@ show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
   show_cautions (self, m);
 }
 
-/* -- class and note ---------------------------------------------------------------------------------------- */
+/* -- class and note
+ * ---------------------------------------------------------------------------------------- */
 
 static void
 show_class (TfSlip *self, const char *text)
@@ -193,7 +214,8 @@ dup_note (TfSlip *self)
   return gtk_text_buffer_get_text (buffer, &start, &end, FALSE);
 }
 
-/* What stands in the note is kept for the region it was written for, also when another region is chosen first. */
+/* What stands in the note is kept for the region it was written for, also when another region is
+ * chosen first. */
 static void
 leave_note (TfSlip *self)
 {
@@ -225,7 +247,9 @@ show_judged (TfSlip *self, TfRegionItem *region, gboolean drawing)
   self->setting = FALSE;
 }
 
-/* -- all of it ------------------------------------------------------------------------------------------------ */
+/* -- all of it
+ * ------------------------------------------------------------------------------------------------
+ */
 
 static void
 choice_changed (TfSlip *self)
@@ -242,7 +266,8 @@ choice_changed (TfSlip *self)
       return;
     }
   const TfMeasure *m = tf_session_get_measure (self->session);
-  const char *method = drawing ? tf_session_get_method (self->session) : tf_region_item_get_row (region)->method;
+  const char *method
+      = drawing ? tf_session_get_method (self->session) : tf_region_item_get_row (region)->method;
   gtk_stack_set_visible_child_name (self->stack, "region");
   show_head (self, drawing, region, m);
   gtk_widget_set_visible (self->numbers, m != NULL);
@@ -275,7 +300,8 @@ note_left (TfSlip *self)
 }
 
 static gboolean
-note_key (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state, TfSlip *self)
+note_key (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
+          TfSlip *self)
 {
   if (key != GDK_KEY_Return || (state & GDK_CONTROL_MASK) == 0)
     return FALSE;
@@ -289,8 +315,10 @@ tf_slip_set_session (TfSlip *self, TfSession *session)
   g_return_if_fail (TF_IS_SLIP (self) && TF_IS_SESSION (session) && self->session == NULL);
   self->session = g_object_ref (session);
   tf_slip_frame_set_session (self->frame_page, session);
-  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self,
+                           G_CONNECT_SWAPPED);
   choice_changed (self);
   status_changed (self);
 }

@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* TfSlip: the panel at the right: everything known of the chosen region or of the drawing in hand; without either, what is known of the
- * frame. What it changes it changes through window actions and the session. */
+/* TfSlip: the panel at the right: everything known of the chosen region or of the drawing in
+ * hand; without either, what is known of the frame. What it changes it changes through window
+ * actions and the session. */
 
 #include "tf-session.h"
 

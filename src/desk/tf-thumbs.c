@@ -7,7 +7,10 @@
 
 #include "tf-picture.h"
 
-enum { PICTURE_SIZE = 2 * TF_THUMB_SIZE }; /* sharp at scale 2 */
+enum
+{
+  PICTURE_SIZE = 2 * TF_THUMB_SIZE
+}; /* sharp at scale 2 */
 static const double range_gauss = 300;
 
 struct _TfThumbs
@@ -52,7 +55,9 @@ static GBytes *
 render (TfFrame *frame)
 {
   TfView view = { .look = TF_LOOK_DISK, .width = PICTURE_SIZE, .height = PICTURE_SIZE, .zoom = 1 };
-  TfPaint paint = { .range_gauss = range_gauss, .palette = TF_PALETTE_GREY, .ground = 0xff17191d, .dark = TRUE };
+  TfPaint paint = {
+    .range_gauss = range_gauss, .palette = TF_PALETTE_GREY, .ground = 0xff17191d, .dark = TRUE
+  };
   guint32 *pixels = g_new (guint32, PICTURE_SIZE * PICTURE_SIZE);
   tf_view_fit (&view, tf_frame_get_geometry (frame), TRUE);
   tf_picture_render (frame, &view, &paint, pixels, PICTURE_SIZE, NULL);
@@ -69,8 +74,8 @@ make (const Order *order, GError **error)
   if (frame == NULL)
     return NULL;
   g_autoptr (GBytes) bytes = render (frame);
-  GdkTexture *texture
-      = gdk_memory_texture_new (PICTURE_SIZE, PICTURE_SIZE, GDK_MEMORY_DEFAULT, bytes, PICTURE_SIZE * 4);
+  GdkTexture *texture = gdk_memory_texture_new (PICTURE_SIZE, PICTURE_SIZE, GDK_MEMORY_DEFAULT,
+                                                bytes, PICTURE_SIZE * 4);
   if (order->cache != NULL)
     {
       g_autofree char *folder = g_path_get_dirname (order->cache);
@@ -98,7 +103,8 @@ made (GObject *source, GAsyncResult *result, gpointer data)
 {
   Order *order = g_task_get_task_data (G_TASK (result));
   g_autoptr (GdkTexture) texture = g_task_propagate_pointer (G_TASK (result), NULL);
-  g_autoptr (TfFrameItem) item = g_steal_pointer (&order->item); /* let go of here, not in the worker */
+  g_autoptr (TfFrameItem) item
+      = g_steal_pointer (&order->item); /* let go of here, not in the worker */
   if (g_cancellable_is_cancelled (g_task_get_cancellable (G_TASK (result))))
     return; /* the roll is gone */
   if (texture != NULL)
@@ -144,7 +150,8 @@ void
 tf_thumbs_ask (TfThumbs *thumbs, TfFrameItem *item)
 {
   g_return_if_fail (thumbs != NULL && TF_IS_FRAME_ITEM (item));
-  if (tf_frame_item_get_thumbnail (item) != NULL || tf_frame_item_get_state (item) == TF_FRAME_REFUSED
+  if (tf_frame_item_get_thumbnail (item) != NULL
+      || tf_frame_item_get_state (item) == TF_FRAME_REFUSED
       || g_hash_table_contains (thumbs->asked, item))
     return;
   g_hash_table_add (thumbs->asked, g_object_ref (item));

@@ -20,7 +20,8 @@ TfChartStyle
 tf_widget_chart_style (GtkWidget *widget, double share)
 {
   AdwStyleManager *manager = adw_style_manager_get_default ();
-  return tf_chart_style (adw_style_manager_get_dark (manager), adw_style_manager_get_high_contrast (manager),
+  return tf_chart_style (adw_style_manager_get_dark (manager),
+                         adw_style_manager_get_high_contrast (manager),
                          tf_widget_text_size (widget) * share);
 }
 
@@ -33,7 +34,8 @@ tf_widget_describe (GtkWidget *widget, char *text)
       g_free (text);
       return;
     }
-  gtk_accessible_update_property (GTK_ACCESSIBLE (widget), GTK_ACCESSIBLE_PROPERTY_DESCRIPTION, text, -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (widget), GTK_ACCESSIBLE_PROPERTY_DESCRIPTION,
+                                  text, -1);
   g_object_set_data_full (G_OBJECT (widget), "tf-description", text, g_free);
 }
 
@@ -51,16 +53,16 @@ texture_of (cairo_surface_t *surface)
   cairo_surface_flush (surface);
   gsize stride = (gsize)cairo_image_surface_get_stride (surface);
   int height = cairo_image_surface_get_height (surface);
-  g_autoptr (GBytes) bytes = g_bytes_new_with_free_func (cairo_image_surface_get_data (surface),
-                                                         stride * (gsize)height,
-                                                         (GDestroyNotify)cairo_surface_destroy,
-                                                         cairo_surface_reference (surface));
-  return gdk_memory_texture_new (cairo_image_surface_get_width (surface), height, GDK_MEMORY_DEFAULT, bytes, stride);
+  g_autoptr (GBytes) bytes = g_bytes_new_with_free_func (
+      cairo_image_surface_get_data (surface), stride * (gsize)height,
+      (GDestroyNotify)cairo_surface_destroy, cairo_surface_reference (surface));
+  return gdk_memory_texture_new (cairo_image_surface_get_width (surface), height,
+                                 GDK_MEMORY_DEFAULT, bytes, stride);
 }
 
 void
-tf_surface_append (GtkSnapshot *snapshot, GtkWidget *widget, cairo_surface_t *surface, double x, double y,
-                   double scale)
+tf_surface_append (GtkSnapshot *snapshot, GtkWidget *widget, cairo_surface_t *surface, double x,
+                   double y, double scale)
 {
   float width = (float)(cairo_image_surface_get_width (surface) / scale);
   float height = (float)(cairo_image_surface_get_height (surface) / scale);

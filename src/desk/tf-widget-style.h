@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* What drawings take from the widget they stand in: light or dark, contrast, the size of the user's text. */
+/* What drawings take from the widget they stand in: light or dark, contrast, the size of the
+ * user's text. */
 
 #include <gtk/gtk.h>
 
@@ -19,8 +20,9 @@ TfChartStyle tf_widget_chart_style (GtkWidget *widget, double share);
 void tf_widget_describe (GtkWidget *widget, char *text);
 /** tf_widget_paints_textures: the renderer takes textures better than cairo nodes. */
 gboolean tf_widget_paints_textures (GtkWidget *widget);
-/** tf_surface_append: adds an image surface to a snapshot the way the renderer likes, its top left at (x, y), drawn at 1/@scale. */
-void tf_surface_append (GtkSnapshot *snapshot, GtkWidget *widget, cairo_surface_t *surface, double x, double y,
-                        double scale);
+/** tf_surface_append: adds an image surface to a snapshot the way the renderer likes, its top
+ * left at (x, y), drawn at 1/@scale. */
+void tf_surface_append (GtkSnapshot *snapshot, GtkWidget *widget, cairo_surface_t *surface,
+                        double x, double y, double scale);
 
 G_END_DECLS

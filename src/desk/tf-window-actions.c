@@ -1,7 +1,8 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* The commands of the window: one row each. Buttons, menus, keys and the session bus all go through these. */
+/* The commands of the window: one row each. Buttons, menus, keys and the session bus all go
+ * through these. */
 
 #include "tf-window-private.h"
 
@@ -82,7 +83,10 @@ ACTION (drop_hint) { judge (window, action, tf_session_drop); }
 ACTION (withdraw) { judge (window, action, tf_session_withdraw); }
 ACTION (undo) { tf_session_undo (session_of (window)); }
 ACTION (redo) { tf_session_redo (session_of (window)); }
-ACTION (set_class) { tf_session_set_class (session_of (window), g_variant_get_string (value, NULL)); }
+ACTION (set_class)
+{
+  tf_session_set_class (session_of (window), g_variant_get_string (value, NULL));
+}
 ACTION (set_note) { tf_session_set_note (session_of (window), g_variant_get_string (value, NULL)); }
 ACTION (retry) { tf_session_retry (session_of (window)); }
 ACTION (forget_trouble) { tf_session_forget_feed_trouble (session_of (window)); }
@@ -134,15 +138,22 @@ ACTION (change_look)
 
 ACTION (change_palette)
 {
-  int palette = index_of (palette_names, G_N_ELEMENTS (palette_names), g_variant_get_string (value, NULL));
+  int palette
+      = index_of (palette_names, G_N_ELEMENTS (palette_names), g_variant_get_string (value, NULL));
   if (palette < 0)
     return;
   tf_preferences_set ("palette", palette_names[palette]);
   tf_session_set_palette (session_of (window), (TfPalette)palette);
 }
 
-ACTION (change_north_up) { tf_session_set_north_up (session_of (window), g_variant_get_boolean (value)); }
-ACTION (change_show_hints) { tf_session_set_show_hints (session_of (window), g_variant_get_boolean (value)); }
+ACTION (change_north_up)
+{
+  tf_session_set_north_up (session_of (window), g_variant_get_boolean (value));
+}
+ACTION (change_show_hints)
+{
+  tf_session_set_show_hints (session_of (window), g_variant_get_boolean (value));
+}
 ACTION (change_range)
 {
   if (isfinite (g_variant_get_double (value)))
@@ -240,7 +251,8 @@ update_states (TfWindow *self, TfSession *session)
   set_state (self, "draw", g_variant_new_boolean (tool == TF_TOOL_OUTLINE));
   set_state (self, "polygon", g_variant_new_boolean (tool == TF_TOOL_POLYGON));
   set_state (self, "look", g_variant_new_string (look_names[tf_session_get_view (session)->look]));
-  set_state (self, "palette", g_variant_new_string (palette_names[tf_session_get_palette (session)]));
+  set_state (self, "palette",
+             g_variant_new_string (palette_names[tf_session_get_palette (session)]));
   set_state (self, "north-up", g_variant_new_boolean (tf_session_get_north_up (session)));
   set_state (self, "range", g_variant_new_double (tf_session_get_range (session)));
   set_state (self, "show-hints", g_variant_new_boolean (tf_session_get_show_hints (session)));
@@ -256,7 +268,8 @@ tf_window_update_actions (TfWindow *self)
   guint n;
   tf_session_get_line (session, &line, &n);
   gboolean frame = tf_session_get_frame (session) != NULL, hint = has_hint (session);
-  gboolean drawing = tf_session_get_tool (session) != TF_TOOL_NONE || tf_session_get_draft (session) != NULL;
+  gboolean drawing
+      = tf_session_get_tool (session) != TF_TOOL_NONE || tf_session_get_draft (session) != NULL;
   static const char *const on_frame[] = { "draw", "polygon", "fit", "zoom-in", "zoom-out" };
   for (guint k = 0; k < G_N_ELEMENTS (on_frame); k++)
     enable (self, on_frame[k], frame);

@@ -45,7 +45,8 @@ dup_chosen (GtkFileChooserNative *chooser)
   return (char **)g_ptr_array_free (paths, FALSE);
 }
 
-/* -- ledgers ---------------------------------------------------------------------------------------- */
+/* -- ledgers
+ * ---------------------------------------------------------------------------------------- */
 
 static const char *const ledger_endings[] = { "*.ledger", NULL };
 
@@ -61,7 +62,8 @@ files_chosen (GtkNativeDialog *dialog, int response, TfWindow *self)
 void
 tf_window_choose_ledger (TfWindow *self)
 {
-  GtkFileChooserNative *chooser = chooser_new (self, _ ("Open a ledger"), GTK_FILE_CHOOSER_ACTION_OPEN, _ ("_Open"));
+  GtkFileChooserNative *chooser
+      = chooser_new (self, _ ("Open a ledger"), GTK_FILE_CHOOSER_ACTION_OPEN, _ ("_Open"));
   add_filter (chooser, _ ("Ledgers"), ledger_endings);
   g_signal_connect_object (chooser, "response", G_CALLBACK (files_chosen), self, 0);
   gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));
@@ -87,8 +89,8 @@ letter_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *self)
 }
 
 static GtkWidget *
-question_new (TfWindow *self, const char *heading, const char *body, const char *yes_id, const char *yes,
-              const char *entry_name, GtkWidget **entry)
+question_new (TfWindow *self, const char *heading, const char *body, const char *yes_id,
+              const char *yes, const char *entry_name, GtkWidget **entry)
 {
   GtkWidget *dialog = adw_message_dialog_new (GTK_WINDOW (self), heading, body);
   AdwMessageDialog *message = ADW_MESSAGE_DIALOG (dialog);
@@ -98,7 +100,8 @@ question_new (TfWindow *self, const char *heading, const char *body, const char 
   adw_message_dialog_set_close_response (message, "cancel");
   *entry = gtk_entry_new ();
   gtk_entry_set_activates_default (GTK_ENTRY (*entry), TRUE);
-  gtk_accessible_update_property (GTK_ACCESSIBLE (*entry), GTK_ACCESSIBLE_PROPERTY_LABEL, entry_name, -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (*entry), GTK_ACCESSIBLE_PROPERTY_LABEL,
+                                  entry_name, -1);
   adw_message_dialog_set_extra_child (message, *entry);
   g_object_set_data (G_OBJECT (dialog), "entry", *entry);
   return dialog;
@@ -108,10 +111,12 @@ static void
 ask_letter (TfWindow *self, const char *path)
 {
   GtkWidget *entry;
-  GtkWidget *dialog = question_new (self, _ ("Letter of its regions"),
-                                    _ ("Region numbers of this ledger begin with a letter, like T2013-0412, so that they never read as official "
-                                       "ones. Two ledgers that will be merged are best given two letters."),
-                                    "make", _ ("_Make the ledger"), _ ("Letter"), &entry);
+  GtkWidget *dialog
+      = question_new (self, _ ("Letter of its regions"),
+                      _ ("Region numbers of this ledger begin with a letter, like T2013-0412, so "
+                         "that they never read as official "
+                         "ones. Two ledgers that will be merged are best given two letters."),
+                      "make", _ ("_Make the ledger"), _ ("Letter"), &entry);
   gtk_entry_set_max_length (GTK_ENTRY (entry), 1);
   g_object_set_data_full (G_OBJECT (dialog), "path", g_strdup (path), g_free);
   g_signal_connect (entry, "changed", G_CALLBACK (letter_changed), dialog);
@@ -126,8 +131,9 @@ new_chosen (GtkNativeDialog *dialog, int response, TfWindow *self)
   g_auto (GStrv) paths = dup_chosen (GTK_FILE_CHOOSER_NATIVE (dialog));
   if (response == GTK_RESPONSE_ACCEPT && paths[0] != NULL)
     {
-      g_autofree char *path = g_str_has_suffix (paths[0], ".ledger") ? g_strdup (paths[0])
-                                                                     : g_strconcat (paths[0], ".ledger", NULL);
+      g_autofree char *path = g_str_has_suffix (paths[0], ".ledger")
+                                  ? g_strdup (paths[0])
+                                  : g_strconcat (paths[0], ".ledger", NULL);
       ask_letter (self, path);
     }
   g_object_unref (dialog);
@@ -136,7 +142,8 @@ new_chosen (GtkNativeDialog *dialog, int response, TfWindow *self)
 void
 tf_window_choose_new_ledger (TfWindow *self)
 {
-  GtkFileChooserNative *chooser = chooser_new (self, _ ("New ledger"), GTK_FILE_CHOOSER_ACTION_SAVE, _ ("_Next"));
+  GtkFileChooserNative *chooser
+      = chooser_new (self, _ ("New ledger"), GTK_FILE_CHOOSER_ACTION_SAVE, _ ("_Next"));
   gtk_file_chooser_set_current_name (GTK_FILE_CHOOSER (chooser), _ ("regions.ledger"));
   g_signal_connect_object (chooser, "response", G_CALLBACK (new_chosen), self, 0);
   gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));
@@ -148,16 +155,21 @@ tf_window_open_demo (TfWindow *self)
   if (g_file_test (TF_DEMO_LEDGER, G_FILE_TEST_EXISTS))
     tf_session_open_ledger (tf_window_get_session (self), TF_DEMO_LEDGER, 0);
   else
-    tf_window_say (self, _ ("The demo ledger is not made yet. Run data-demo/start once: it makes it and opens it here."));
+    tf_window_say (self, _ ("The demo ledger is not made yet. Run data-demo/start once: it makes "
+                            "it and opens it here."));
 }
 
-/* -- frames ------------------------------------------------------------------------------------------------ */
+/* -- frames
+ * ------------------------------------------------------------------------------------------------
+ */
 
 void
 tf_window_choose_frames (TfWindow *self)
 {
-  static const char *const endings[] = { "*.fits", "*.fit", "*.fts", "*.fits.gz", "*.fts.gz", "*.fz", NULL };
-  GtkFileChooserNative *chooser = chooser_new (self, _ ("Add frames"), GTK_FILE_CHOOSER_ACTION_OPEN, _ ("_Add"));
+  static const char *const endings[]
+      = { "*.fits", "*.fit", "*.fts", "*.fits.gz", "*.fts.gz", "*.fz", NULL };
+  GtkFileChooserNative *chooser
+      = chooser_new (self, _ ("Add frames"), GTK_FILE_CHOOSER_ACTION_OPEN, _ ("_Add"));
   gtk_file_chooser_set_select_multiple (GTK_FILE_CHOOSER (chooser), TRUE);
   add_filter (chooser, _ ("FITS frames"), endings);
   g_signal_connect_object (chooser, "response", G_CALLBACK (files_chosen), self, 0);
@@ -193,7 +205,8 @@ tf_window_add_drop (TfWindow *self)
   gtk_widget_add_controller (GTK_WIDGET (self), GTK_EVENT_CONTROLLER (target));
 }
 
-/* -- the person --------------------------------------------------------------------------------------------- */
+/* -- the person
+ * --------------------------------------------------------------------------------------------- */
 
 static void
 name_changed (GtkEditable *entry, AdwMessageDialog *dialog)
@@ -219,9 +232,10 @@ void
 tf_window_ask_person (TfWindow *self, const char *then)
 {
   GtkWidget *entry;
-  GtkWidget *dialog = question_new (self, _ ("Who is marking?"),
-                                    _ ("Your name, or your desk’s, stands beside every mark you make."), "take",
-                                    _ ("_Take this name"), _ ("Name"), &entry);
+  GtkWidget *dialog
+      = question_new (self, _ ("Who is marking?"),
+                      _ ("Your name, or your desk’s, stands beside every mark you make."), "take",
+                      _ ("_Take this name"), _ ("Name"), &entry);
   g_object_set_data_full (G_OBJECT (dialog), "then", g_strdup (then), g_free);
   adw_message_dialog_set_response_enabled (ADW_MESSAGE_DIALOG (dialog), "take", FALSE);
   g_signal_connect (entry, "changed", G_CALLBACK (name_changed), dialog);
@@ -233,15 +247,20 @@ tf_window_ask_person (TfWindow *self, const char *then)
   gtk_widget_grab_focus (entry);
 }
 
-/* -- about ---------------------------------------------------------------------------------------------------- */
+/* -- about
+ * ----------------------------------------------------------------------------------------------------
+ */
 
 static const char *
 cautions_text (void)
 {
-  return _ ("Complexity figures are not in this version. When they are, they describe the field and are no flare forecast: "
-            "operational decisions (aviation, power grid, crewed flight, satellites) rest with the responsible national "
+  return _ ("Complexity figures are not in this version. When they are, they describe the field "
+            "and are no flare forecast: "
+            "operational decisions (aviation, power grid, crewed flight, satellites) rest with the "
+            "responsible national "
             "space-weather service and licensed staff.\n\n"
-            "Line-of-sight fields mislead towards the limb: below μ = 0.5 every number carries a caution, below 0.34 no verdict is "
+            "Line-of-sight fields mislead towards the limb: below μ = 0.5 every number carries a "
+            "caution, below 0.34 no verdict is "
             "given.\n\n"
             "A hint is a suggestion of a plain rule; nobody has judged it.");
 }
@@ -263,7 +282,8 @@ tf_window_show_about (TfWindow *self)
 void
 tf_window_show_cautions (TfWindow *self)
 {
-  GtkWidget *dialog = adw_message_dialog_new (GTK_WINDOW (self), _ ("What to keep in mind"), cautions_text ());
+  GtkWidget *dialog
+      = adw_message_dialog_new (GTK_WINDOW (self), _ ("What to keep in mind"), cautions_text ());
   adw_message_dialog_add_response (ADW_MESSAGE_DIALOG (dialog), "close", _ ("_Close"));
   gtk_window_present (GTK_WINDOW (dialog));
 }

@@ -9,7 +9,8 @@ G_BEGIN_DECLS
 
 /* tf-window-actions.c */
 void tf_window_add_actions (TfWindow *window);
-/** tf_window_update_actions: which commands are possible now, and the state of those that have one */
+/** tf_window_update_actions: which commands are possible now, and the state of those that have
+ * one */
 void tf_window_update_actions (TfWindow *window);
 /* tf-window-files.c: choosing files, dropping them, asking for names */
 void tf_window_choose_ledger (TfWindow *window);

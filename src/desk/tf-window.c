@@ -37,7 +37,13 @@ struct _TfWindow
 
 G_DEFINE_FINAL_TYPE (TfWindow, tf_window, ADW_TYPE_APPLICATION_WINDOW)
 
-enum { AGE_SECONDS = 30, TOAST_SECONDS = 4, ROLL_WIDTH = 166, SLIP_WIDTH = 304 };
+enum
+{
+  AGE_SECONDS = 30,
+  TOAST_SECONDS = 4,
+  ROLL_WIDTH = 166,
+  SLIP_WIDTH = 304
+};
 static const char sqlite_magic[] = "SQLite format 3";
 
 TfSession *
@@ -55,15 +61,17 @@ tf_window_say (TfWindow *self, const char *text)
   adw_toast_overlay_add_toast (self->toasts, toast);
 }
 
-/* -- the age of the newest frame --------------------------------------------------------------------- */
+/* -- the age of the newest frame
+ * --------------------------------------------------------------------- */
 
 static double
 age_of (TfTime newest)
 {
   g_autoptr (GDateTime) now = g_date_time_new_now_utc ();
   TfTime time = tf_time_from_calendar (g_date_time_get_year (now), g_date_time_get_month (now),
-                                       g_date_time_get_day_of_month (now), g_date_time_get_hour (now),
-                                       g_date_time_get_minute (now), g_date_time_get_seconds (now), TF_SCALE_UTC);
+                                       g_date_time_get_day_of_month (now),
+                                       g_date_time_get_hour (now), g_date_time_get_minute (now),
+                                       g_date_time_get_seconds (now), TF_SCALE_UTC);
   return time.s - newest.s;
 }
 
@@ -80,7 +88,8 @@ show_age (TfWindow *self)
   g_autofree char *words = tf_words_dup_age (age), *step = tf_words_dup_age (cadence);
   g_autofree char *text = g_strdup_printf (late ? _ ("newest %s · late") : _ ("newest %s"), words);
   g_autofree char *iso = tf_time_dup_iso (newest, 0);
-  g_autofree char *tip = g_strdup_printf (_ ("Newest frame: %s. Usual step between frames: %s."), iso, step);
+  g_autofree char *tip
+      = g_strdup_printf (_ ("Newest frame: %s. Usual step between frames: %s."), iso, step);
   gtk_label_set_label (self->age, text);
   gtk_widget_set_tooltip_text (GTK_WIDGET (self->age), tip);
   if (late)
@@ -96,7 +105,8 @@ age_tick (gpointer data)
   return G_SOURCE_CONTINUE;
 }
 
-/* -- following the session ------------------------------------------------------------------------------ */
+/* -- following the session
+ * ------------------------------------------------------------------------------ */
 
 static void
 show_page (TfWindow *self)
@@ -109,7 +119,8 @@ show_page (TfWindow *self)
   if (n == 0 && tf_session_get_progress (self->session, NULL) != NULL)
     page = "taking-in";
   gtk_stack_set_visible_child_name (self->stack, page);
-  gtk_revealer_set_reveal_child (self->loose_bar, n > 0 && tf_session_get_ledger_path (self->session) == NULL);
+  gtk_revealer_set_reveal_child (self->loose_bar,
+                                 n > 0 && tf_session_get_ledger_path (self->session) == NULL);
 }
 
 /* A bar stands only while there is something in it. */
@@ -155,7 +166,8 @@ status_changed (TfWindow *self)
   guint pending = tf_session_get_pending (self->session);
   g_autofree char *text = NULL;
   if (problem != NULL && pending > 1)
-    text = g_strdup_printf (ngettext ("%s %u more deed waits behind it.", "%s %u more deeds wait behind it.", pending - 1),
+    text = g_strdup_printf (ngettext ("%s %u more deed waits behind it.",
+                                      "%s %u more deeds wait behind it.", pending - 1),
                             problem, pending - 1);
   show_bar (self->problem_bar, self->problem, text != NULL ? text : problem);
   show_bar (self->feed_bar, self->feed_trouble, tf_session_get_feed_trouble (self->session));
@@ -172,7 +184,8 @@ points_changed (TfWindow *self)
   gtk_widget_set_visible (self->wings_offer, bare && hidden > 0);
   g_autofree char *text
       = g_strdup_printf (ngettext ("No marks yet: nobody has judged. %u hint waits.",
-                                   "No marks yet: nobody has judged. %u hints wait.", hidden), hidden);
+                                   "No marks yet: nobody has judged. %u hints wait.", hidden),
+                         hidden);
   gtk_label_set_label (self->wings_words, text);
   tf_window_update_actions (self);
 }
@@ -193,24 +206,35 @@ static void
 connect_session (TfWindow *self)
 {
   TfSession *session = self->session;
-  g_signal_connect_object (session, "ledger-changed", G_CALLBACK (ledger_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "frames-changed", G_CALLBACK (frames_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "points-changed", G_CALLBACK (points_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "person-needed", G_CALLBACK (person_needed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "frame-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "choice-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "regions-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "view-changed", G_CALLBACK (tf_window_update_actions), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "ledger-changed", G_CALLBACK (ledger_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frames-changed", G_CALLBACK (frames_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "points-changed", G_CALLBACK (points_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "person-needed", G_CALLBACK (person_needed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (tf_window_update_actions), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (tf_window_update_actions), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "regions-changed", G_CALLBACK (tf_window_update_actions), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "view-changed", G_CALLBACK (tf_window_update_actions), self,
+                           G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "message", G_CALLBACK (message), self, 0);
 }
 
-/* The panels have a width of their own, which grows with the user's text but slower, so that the plate keeps its room. */
+/* The panels have a width of their own, which grows with the user's text but slower, so that the
+ * plate keeps its room. */
 static void
 set_widths (TfWindow *self)
 {
   double share = fmin (fmax (tf_widget_text_size (GTK_WIDGET (self)) / 13.5, 0.9), 2.5);
-  int roll = (int)(ROLL_WIDTH * (0.55 + 0.45 * share)), slip = (int)(SLIP_WIDTH * (0.6 + 0.4 * share));
+  int roll = (int)(ROLL_WIDTH * (0.55 + 0.45 * share)),
+      slip = (int)(SLIP_WIDTH * (0.6 + 0.4 * share));
   adw_clamp_set_maximum_size (self->roll_clamp, roll);
   adw_clamp_set_tightening_threshold (self->roll_clamp, roll);
   adw_clamp_set_maximum_size (self->slip_clamp, slip);
@@ -219,7 +243,9 @@ set_widths (TfWindow *self)
   gtk_widget_set_size_request (GTK_WIDGET (self->slip), slip, -1);
 }
 
-/* -- opening ------------------------------------------------------------------------------------------------ */
+/* -- opening
+ * ------------------------------------------------------------------------------------------------
+ */
 
 gboolean
 tf_window_is_ledger (const char *path)
@@ -255,7 +281,9 @@ tf_window_open (TfWindow *self, char *const *paths)
     tf_session_add_frames (self->session, (char *const *)frames->pdata);
 }
 
-/* -- closing -------------------------------------------------------------------------------------------------- */
+/* -- closing
+ * --------------------------------------------------------------------------------------------------
+ */
 
 static void
 close_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *self)
@@ -273,9 +301,12 @@ close_request (GtkWindow *window)
   TfWindow *self = TF_WINDOW (window);
   if (tf_session_get_problem (self->session) == NULL)
     return FALSE; /* deeds on their way are waited for by the session */
-  GtkWidget *dialog = adw_message_dialog_new (window, _ ("Close without saving?"), tf_session_get_problem (self->session));
-  adw_message_dialog_add_responses (ADW_MESSAGE_DIALOG (dialog), "stay", _ ("_Stay"), "close", _ ("_Close"), NULL);
-  adw_message_dialog_set_response_appearance (ADW_MESSAGE_DIALOG (dialog), "close", ADW_RESPONSE_DESTRUCTIVE);
+  GtkWidget *dialog = adw_message_dialog_new (window, _ ("Close without saving?"),
+                                              tf_session_get_problem (self->session));
+  adw_message_dialog_add_responses (ADW_MESSAGE_DIALOG (dialog), "stay", _ ("_Stay"), "close",
+                                    _ ("_Close"), NULL);
+  adw_message_dialog_set_response_appearance (ADW_MESSAGE_DIALOG (dialog), "close",
+                                              ADW_RESPONSE_DESTRUCTIVE);
   g_signal_connect_object (dialog, "response", G_CALLBACK (close_answered), self, 0);
   gtk_window_present (GTK_WINDOW (dialog));
   return TRUE;
@@ -338,7 +369,8 @@ tf_window_class_init (TfWindowClass *klass)
 static void
 restore_preferences (TfWindow *self)
 {
-  g_autofree char *person = tf_preferences_dup ("person"), *palette = tf_preferences_dup ("palette");
+  g_autofree char *person = tf_preferences_dup ("person"),
+                  *palette = tf_preferences_dup ("palette");
   if (person != NULL)
     tf_session_set_person (self->session, person);
   if (g_strcmp0 (palette, "amber-indigo") == 0)
@@ -360,8 +392,10 @@ tf_window_init (TfWindow *self)
   tf_wings_view_set_session (self->wings, self->session);
   self->age_timer = g_timeout_add_seconds (AGE_SECONDS, age_tick, self);
   GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));
-  g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (set_widths), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (set_widths), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (set_widths), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (settings, "notify::gtk-font-name", G_CALLBACK (set_widths), self,
+                           G_CONNECT_SWAPPED);
   set_widths (self);
   ledger_changed (self);
   status_changed (self);

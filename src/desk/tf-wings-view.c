@@ -24,14 +24,19 @@ struct _TfWingsView
 
 G_DEFINE_FINAL_TYPE (TfWingsView, tf_wings_view, GTK_TYPE_WIDGET)
 
-enum { HEIGHT = 132, CLICK_SLACK = 4 };
+enum
+{
+  HEIGHT = 132,
+  CLICK_SLACK = 4
+};
 static const double label_share = 0.78, lat_max_deg = 45, wheel_factor = 1.25;
 static const double shortest_years = 0.01, longest_years = 400;
 
 static TfArea
 area_of (TfWingsView *self)
 {
-  return (TfArea){ 0, 0, gtk_widget_get_width (GTK_WIDGET (self)), gtk_widget_get_height (GTK_WIDGET (self)) };
+  return (TfArea){ 0, 0, gtk_widget_get_width (GTK_WIDGET (self)),
+                   gtk_widget_get_height (GTK_WIDGET (self)) };
 }
 
 static TfChartStyle
@@ -48,7 +53,8 @@ redraw (TfWingsView *self)
   gtk_widget_queue_draw (GTK_WIDGET (self));
 }
 
-/* -- following the session -------------------------------------------------------------------------------- */
+/* -- following the session
+ * -------------------------------------------------------------------------------- */
 
 static double
 frame_year (TfWingsView *self)
@@ -75,7 +81,8 @@ points_changed (TfWingsView *self)
   self->wings.chosen = tf_session_get_chosen_dot (self->session);
   tf_session_get_pick (self->session, &self->wings.pick_from, &self->wings.pick_to);
   if (self->fitted)
-    tf_wings_fit (&self->wings, isfinite (self->wings.frame_year) ? self->wings.frame_year : this_year ());
+    tf_wings_fit (&self->wings,
+                  isfinite (self->wings.frame_year) ? self->wings.frame_year : this_year ());
   redraw (self);
 }
 
@@ -85,7 +92,8 @@ place_changed (TfWingsView *self)
   double year = frame_year (self);
   gint64 chosen = tf_session_get_chosen_dot (self->session);
   gboolean same_year = year >= self->wings.frame_year && year <= self->wings.frame_year;
-  if ((same_year || (isnan (year) && isnan (self->wings.frame_year))) && chosen == self->wings.chosen)
+  if ((same_year || (isnan (year) && isnan (self->wings.frame_year)))
+      && chosen == self->wings.chosen)
     return;
   self->wings.frame_year = year;
   self->wings.chosen = chosen;
@@ -99,13 +107,17 @@ tf_wings_view_set_session (TfWingsView *self, TfSession *session)
 {
   g_return_if_fail (TF_IS_WINGS_VIEW (self) && TF_IS_SESSION (session) && self->session == NULL);
   self->session = g_object_ref (session);
-  g_signal_connect_object (session, "points-changed", G_CALLBACK (points_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "frame-changed", G_CALLBACK (place_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (session, "choice-changed", G_CALLBACK (place_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "points-changed", G_CALLBACK (points_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "frame-changed", G_CALLBACK (place_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "choice-changed", G_CALLBACK (place_changed), self,
+                           G_CONNECT_SWAPPED);
   points_changed (self);
 }
 
-/* -- zoom, pick, choose -------------------------------------------------------------------------------------- */
+/* -- zoom, pick, choose
+ * -------------------------------------------------------------------------------------- */
 
 static void
 set_span (TfWingsView *self, double from, double to)
@@ -121,7 +133,8 @@ set_span (TfWingsView *self, double from, double to)
 static void
 zoom_about (TfWingsView *self, double factor, double year)
 {
-  set_span (self, year - (year - self->wings.from_year) / factor, year + (self->wings.to_year - year) / factor);
+  set_span (self, year - (year - self->wings.from_year) / factor,
+            year + (self->wings.to_year - year) / factor);
 }
 
 static void
@@ -203,9 +216,11 @@ pressed (GtkGestureClick *gesture, int n, double x, double y, TfWingsView *self)
 }
 
 static gboolean
-key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state, TfWingsView *self)
+key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
+             TfWingsView *self)
 {
-  double span = self->wings.to_year - self->wings.from_year, middle = (self->wings.to_year + self->wings.from_year) / 2;
+  double span = self->wings.to_year - self->wings.from_year,
+         middle = (self->wings.to_year + self->wings.from_year) / 2;
   if (self->session == NULL || (state & (GDK_CONTROL_MASK | GDK_ALT_MASK)) != 0)
     return FALSE;
   switch (key)
@@ -232,7 +247,8 @@ key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifi
     }
 }
 
-/* -- the widget ---------------------------------------------------------------------------------------------- */
+/* -- the widget
+ * ---------------------------------------------------------------------------------------------- */
 
 static void
 draw (TfWingsView *self, int width, int height, int scale)
@@ -261,11 +277,12 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
 }
 
 static void
-measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural, int *minimum_baseline,
-         int *natural_baseline)
+measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural,
+         int *minimum_baseline, int *natural_baseline)
 {
   double text = tf_widget_text_size (widget) / 14.0;
-  *minimum = orientation == GTK_ORIENTATION_VERTICAL ? (int)(HEIGHT * fmax (1, 0.6 + 0.4 * text)) : 200;
+  *minimum
+      = orientation == GTK_ORIENTATION_VERTICAL ? (int)(HEIGHT * fmax (1, 0.6 + 0.4 * text)) : 200;
   *natural = *minimum;
 }
 
@@ -314,7 +331,8 @@ add_controllers (TfWingsView *self)
   g_signal_connect (drag, "drag-update", G_CALLBACK (drag_update), self);
   g_signal_connect (drag, "drag-end", G_CALLBACK (drag_end), self);
   gtk_widget_add_controller (widget, GTK_EVENT_CONTROLLER (drag));
-  GtkEventController *scroll = gtk_event_controller_scroll_new (GTK_EVENT_CONTROLLER_SCROLL_VERTICAL);
+  GtkEventController *scroll
+      = gtk_event_controller_scroll_new (GTK_EVENT_CONTROLLER_SCROLL_VERTICAL);
   g_signal_connect (scroll, "scroll", G_CALLBACK (scrolled), self);
   gtk_widget_add_controller (widget, scroll);
   GtkEventController *pointer = gtk_event_controller_motion_new ();
@@ -335,9 +353,12 @@ tf_wings_view_init (TfWingsView *self)
   self->wings.pick_from = self->wings.pick_to = self->wings.pick_low = self->wings.pick_high = NAN;
   tf_wings_fit (&self->wings, this_year ());
   gtk_widget_set_focusable (GTK_WIDGET (self), TRUE);
-  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Wings"), -1);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Wings"),
+                                  -1);
   add_controllers (self);
   AdwStyleManager *manager = adw_style_manager_get_default ();
-  g_signal_connect_object (manager, "notify::dark", G_CALLBACK (style_changed), self, G_CONNECT_SWAPPED);
-  g_signal_connect_object (manager, "notify::high-contrast", G_CALLBACK (style_changed), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (manager, "notify::dark", G_CALLBACK (style_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (manager, "notify::high-contrast", G_CALLBACK (style_changed), self,
+                           G_CONNECT_SWAPPED);
 }

@@ -3,10 +3,10 @@
  */
 #pragma once
 
-/* TfWingsView: the butterfly strip along the bottom: the map of the program. The wheel zooms time about the pointer, a drag picks a
- * stretch of time, a double click shows all, a click on a dot goes to its frame and region. By keyboard: arrows move along time, + and −
- * zoom, Home shows all.
- */
+/* TfWingsView: the butterfly strip along the bottom: the map of the program. The wheel zooms
+ * time about the pointer, a drag picks a stretch of time, a double click shows all, a click on a
+ * dot goes to its frame and region. By keyboard: arrows move along time, + and − zoom, Home
+ * shows all. */
 
 #include "tf-session.h"
 

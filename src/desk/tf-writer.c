@@ -18,7 +18,12 @@ struct _TfWriter
 
 G_DEFINE_FINAL_TYPE (TfWriter, tf_writer, G_TYPE_OBJECT)
 
-enum { PROP_PROBLEM = 1, PROP_PENDING, N_PROPS };
+enum
+{
+  PROP_PROBLEM = 1,
+  PROP_PENDING,
+  N_PROPS
+};
 static const char *const prop_names[N_PROPS] = { NULL, "problem", "pending" };
 
 static void try_next (TfWriter *self);
@@ -79,7 +84,8 @@ deed_done (GObject *source, GAsyncResult *result, gpointer data)
   else
     {
       TfDeed *deed = g_queue_peek_head (&self->deeds);
-      set_problem (self, g_strdup_printf (_ ("Not saved yet: %s. %s"), tf_deed_name (deed), error->message));
+      set_problem (
+          self, g_strdup_printf (_ ("Not saved yet: %s. %s"), tf_deed_name (deed), error->message));
       return;
     }
   try_next (self);
@@ -88,7 +94,8 @@ deed_done (GObject *source, GAsyncResult *result, gpointer data)
 static void
 try_next (TfWriter *self)
 {
-  if (self->in_hand || self->problem != NULL || self->lane == NULL || g_queue_is_empty (&self->deeds))
+  if (self->in_hand || self->problem != NULL || self->lane == NULL
+      || g_queue_is_empty (&self->deeds))
     return;
   self->in_hand = TRUE;
   const TfDeed *deed = g_queue_peek_head (&self->deeds);
@@ -174,9 +181,9 @@ tf_writer_class_init (TfWriterClass *klass)
   GObjectClass *object = G_OBJECT_CLASS (klass);
   object->get_property = get_property;
   object->finalize = finalize;
-  g_object_class_install_property (object, PROP_PROBLEM,
-                                   g_param_spec_string ("problem", NULL, NULL, NULL,
-                                                        G_PARAM_READABLE | G_PARAM_STATIC_STRINGS));
+  g_object_class_install_property (
+      object, PROP_PROBLEM,
+      g_param_spec_string ("problem", NULL, NULL, NULL, G_PARAM_READABLE | G_PARAM_STATIC_STRINGS));
   g_object_class_install_property (object, PROP_PENDING,
                                    g_param_spec_uint ("pending", NULL, NULL, 0, G_MAXUINT, 0,
                                                       G_PARAM_READABLE | G_PARAM_STATIC_STRINGS));

@@ -8,7 +8,8 @@
 
 #include "tf-writer.h"
 
-/* -- the writer ---------------------------------------------------------------------------------- */
+/* -- the writer
+ * ---------------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -77,7 +78,8 @@ saved_after_commit (void)
 static void
 stays_and_is_tried_again (void)
 {
-  g_autofree char *path = test_desk_path ("not-there/late.ledger"), *folder = g_path_get_dirname (path);
+  g_autofree char *path = test_desk_path ("not-there/late.ledger"),
+                  *folder = g_path_get_dirname (path);
   Said said = { 0 };
   g_autoptr (TfWriter) writer = writer_new (path, 'T', &said);
   tf_writer_push (writer, draft_deed (1));
@@ -114,10 +116,12 @@ nothing_to_undo (void)
   tf_writer_push (writer, tf_deed_new (TF_DEED_UNDO, "north desk"));
   test_desk_wait ("the answer", is_empty, writer);
   g_assert_cmpuint (said.refused, ==, 1);
-  g_assert_null (tf_writer_get_problem (writer)); /* trying again would not help: not in the way of the next */
+  g_assert_null (
+      tf_writer_get_problem (writer)); /* trying again would not help: not in the way of the next */
 }
 
-/* -- the session ------------------------------------------------------------------------------------ */
+/* -- the session
+ * ------------------------------------------------------------------------------------ */
 
 static guint
 count (TfSession *session, gboolean hints)
@@ -166,7 +170,8 @@ keep_and_undo (void)
   test_desk_wait ("the mark", one_mark, session);
   g_assert_cmpuint (count (session, TRUE), ==, hints - 1);
   g_assert_cmpuint (marks_in_file (path), ==, 1);
-  g_assert_cmpstr (tf_region_item_get_row (tf_session_get_region (session))->origin, ==, "kept as hinted");
+  g_assert_cmpstr (tf_region_item_get_row (tf_session_get_region (session))->origin, ==,
+                   "kept as hinted");
   g_assert_true (tf_session_can_undo (session));
   g_assert_true (tf_session_undo (session));
   test_desk_wait ("the mark to go", no_mark, session);
@@ -202,8 +207,8 @@ cap_about_first (TfSession *session, double radius)
 {
   g_autoptr (TfRegionItem) item = g_list_model_get_item (tf_session_get_regions (session), 0);
   const TfMeasure *m = &tf_region_item_get_row (item)->measure;
-  return tf_outline_new_cap (tf_frame_get_info (tf_session_get_frame (session))->time, m->carrington_lon_deg, m->lat_deg,
-                             radius, 0);
+  return tf_outline_new_cap (tf_frame_get_info (tf_session_get_frame (session))->time,
+                             m->carrington_lon_deg, m->lat_deg, radius, 0);
 }
 
 static gboolean
@@ -275,7 +280,8 @@ two_frames (gpointer session)
 static void
 newest_wins (void)
 {
-  const char *paths[] = { TF_DEMO_FRAMES "/brindle-20131010-0600.fits", TF_DEMO_FRAMES "/brindle-20131011-0600.fits", NULL };
+  const char *paths[] = { TF_DEMO_FRAMES "/brindle-20131010-0600.fits",
+                          TF_DEMO_FRAMES "/brindle-20131011-0600.fits", NULL };
   g_autoptr (TfSession) session = tf_session_new (); /* no ledger: only looked at */
   tf_session_add_frames (session, (char *const *)paths);
   test_desk_wait ("both frames", two_frames, session);
@@ -286,7 +292,8 @@ newest_wins (void)
   tf_session_choose_frame (session, first);
   tf_session_choose_frame (session, second);
   test_desk_wait ("a frame", frame_is_open, session);
-  g_assert_cmpstr (tf_frame_get_path (tf_session_get_frame (session)), ==, tf_frame_item_get_row (second)->path);
+  g_assert_cmpstr (tf_frame_get_path (tf_session_get_frame (session)), ==,
+                   tf_frame_item_get_row (second)->path);
   g_assert_false (tf_session_can_keep (session));
   tf_session_close (session);
 }
@@ -338,7 +345,8 @@ has_class (gpointer session)
 static gboolean
 has_alpha (gpointer session)
 {
-  return has_class (session) && g_str_equal (tf_region_item_get_row (tf_session_get_region (session))->mw_class, "α");
+  return has_class (session)
+         && g_str_equal (tf_region_item_get_row (tf_session_get_region (session))->mw_class, "α");
 }
 
 static void
@@ -399,17 +407,20 @@ void
 test_desk_add_session (void)
 {
   g_test_add_func ("/desk/writer/a-deed-is-said-to-be-saved-after-its-commit", saved_after_commit);
-  g_test_add_func ("/desk/writer/a-deed-that-fails-stays-and-is-tried-again", stays_and_is_tried_again);
+  g_test_add_func ("/desk/writer/a-deed-that-fails-stays-and-is-tried-again",
+                   stays_and_is_tried_again);
   g_test_add_func ("/desk/writer/a-deed-can-be-given-up", given_up);
   g_test_add_func ("/desk/writer/a-deed-that-never-fits-is-not-in-the-way", nothing_to_undo);
   g_test_add_func ("/desk/session/keeping-undoing-and-redoing-a-hint", keep_and_undo);
   g_test_add_func ("/desk/session/dropping-a-hint-goes-on-to-the-next", drop_goes_on);
-  g_test_add_func ("/desk/session/a-draft-is-measured-at-once-and-again-at-rest", draft_is_measured);
+  g_test_add_func ("/desk/session/a-draft-is-measured-at-once-and-again-at-rest",
+                   draft_is_measured);
   g_test_add_func ("/desk/session/a-draft-outlives-the-window", draft_outlives_the_window);
   g_test_add_func ("/desk/session/the-newest-request-for-a-frame-wins", newest_wins);
   g_test_add_func ("/desk/session/a-polygon-is-drawn-corner-by-corner", drawing_a_polygon);
   g_test_add_func ("/desk/session/two-corners-are-no-outline", two_corners_are_no_outline);
   g_test_add_func ("/desk/session/delta-is-refused-with-alpha", classes);
-  g_test_add_func ("/desk/session/a-ledger-that-is-not-there-is-said-and-not-made", no_ledger_there);
+  g_test_add_func ("/desk/session/a-ledger-that-is-not-there-is-said-and-not-made",
+                   no_ledger_there);
   g_test_add_func ("/desk/session/a-stretch-of-the-wings-chooses-the-frames", picking_a_stretch);
 }

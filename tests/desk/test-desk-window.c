@@ -14,7 +14,8 @@
 static TfWindow *
 window_new (void)
 {
-  g_autoptr (AdwApplication) application = adw_application_new ("io.tiltfield.Test", G_APPLICATION_NON_UNIQUE);
+  g_autoptr (AdwApplication) application
+      = adw_application_new ("io.tiltfield.Test", G_APPLICATION_NON_UNIQUE);
   g_application_register (G_APPLICATION (application), NULL, NULL);
   return tf_window_new (GTK_APPLICATION (application));
 }
@@ -44,7 +45,8 @@ templates (void)
 static gboolean
 has_regions (gpointer session)
 {
-  return tf_session_get_frame (session) != NULL && g_list_model_get_n_items (tf_session_get_regions (session)) > 0;
+  return tf_session_get_frame (session) != NULL
+         && g_list_model_get_n_items (tf_session_get_regions (session)) > 0;
 }
 
 /* A window on a ledger with one frame and its hints. */
@@ -95,14 +97,16 @@ actions_follow (void)
   gtk_window_destroy (GTK_WINDOW (window));
 }
 
-/* -- what a screen reader meets ----------------------------------------------------------------------- */
+/* -- what a screen reader meets
+ * ----------------------------------------------------------------------- */
 
 static gboolean
 has_words (GtkWidget *widget)
 {
   if (GTK_IS_LABEL (widget) && gtk_label_get_label (GTK_LABEL (widget))[0] != '\0')
     return TRUE;
-  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL; child = gtk_widget_get_next_sibling (child))
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL;
+       child = gtk_widget_get_next_sibling (child))
     if (has_words (child))
       return TRUE;
   return FALSE;
@@ -111,7 +115,8 @@ has_words (GtkWidget *widget)
 static gboolean
 is_named (GtkWidget *widget)
 {
-  return gtk_test_accessible_has_property (GTK_ACCESSIBLE (widget), GTK_ACCESSIBLE_PROPERTY_LABEL) || has_words (widget);
+  return gtk_test_accessible_has_property (GTK_ACCESSIBLE (widget), GTK_ACCESSIBLE_PROPERTY_LABEL)
+         || has_words (widget);
 }
 
 static void
@@ -119,16 +124,20 @@ check_names (GtkWidget *widget, guint *n)
 {
   gboolean press = GTK_IS_BUTTON (widget) || GTK_IS_MENU_BUTTON (widget);
   gboolean draws = TF_IS_PLATE (widget) || TF_IS_DIAL_VIEW (widget) || TF_IS_WINGS_VIEW (widget);
-  gboolean part = GTK_IS_MENU_BUTTON (gtk_widget_get_parent (widget)) || GTK_IS_WINDOW_CONTROLS (gtk_widget_get_parent (widget));
+  gboolean part = GTK_IS_MENU_BUTTON (gtk_widget_get_parent (widget))
+                  || GTK_IS_WINDOW_CONTROLS (gtk_widget_get_parent (widget));
   if ((press || draws || GTK_IS_SCALE (widget) || GTK_IS_TEXT_VIEW (widget)) && !part)
     {
       if (!is_named (widget))
         g_error ("a %s has no name", G_OBJECT_TYPE_NAME (widget));
       (*n)++;
     }
-  if (draws && !gtk_test_accessible_has_property (GTK_ACCESSIBLE (widget), GTK_ACCESSIBLE_PROPERTY_DESCRIPTION))
+  if (draws
+      && !gtk_test_accessible_has_property (GTK_ACCESSIBLE (widget),
+                                            GTK_ACCESSIBLE_PROPERTY_DESCRIPTION))
     g_error ("a %s does not say what it shows", G_OBJECT_TYPE_NAME (widget));
-  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL; child = gtk_widget_get_next_sibling (child))
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL;
+       child = gtk_widget_get_next_sibling (child))
     check_names (child, n);
 }
 
@@ -145,7 +154,8 @@ names (void)
   gtk_window_destroy (GTK_WINDOW (window));
 }
 
-/* -- the slip ---------------------------------------------------------------------------------------------- */
+/* -- the slip
+ * ---------------------------------------------------------------------------------------------- */
 
 static void
 count_rows (GtkWidget *widget, guint *n)
@@ -155,7 +165,8 @@ count_rows (GtkWidget *widget, guint *n)
       g_assert_nonnull (strstr (tf_slip_row_get_how (TF_SLIP_ROW (widget)), "flux-centroid/1"));
       (*n)++;
     }
-  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL; child = gtk_widget_get_next_sibling (child))
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL;
+       child = gtk_widget_get_next_sibling (child))
     count_rows (child, n);
 }
 
@@ -189,7 +200,8 @@ help_overlay (void)
 {
   if (!test_desk_has_display ())
     return;
-  g_autoptr (GtkBuilder) builder = gtk_builder_new_from_resource ("/io/tiltfield/Tiltfield/gtk/help-overlay.ui");
+  g_autoptr (GtkBuilder) builder
+      = gtk_builder_new_from_resource ("/io/tiltfield/Tiltfield/gtk/help-overlay.ui");
   g_assert_true (GTK_IS_SHORTCUTS_WINDOW (gtk_builder_get_object (builder, "help_overlay")));
   gtk_window_destroy (GTK_WINDOW (gtk_builder_get_object (builder, "help_overlay")));
 }
@@ -197,10 +209,12 @@ help_overlay (void)
 void
 test_desk_add_window (void)
 {
-  g_test_add_func ("/desk/window/templates-stand-and-nothing-can-be-kept-without-a-ledger", templates);
+  g_test_add_func ("/desk/window/templates-stand-and-nothing-can-be-kept-without-a-ledger",
+                   templates);
   g_test_add_func ("/desk/window/commands-are-possible-when-they-make-sense", actions_follow);
   g_test_add_func ("/desk/window/every-button-and-drawing-has-a-name", names);
   g_test_add_func ("/desk/window/the-help-overlay-opens", help_overlay);
-  g_test_add_func ("/desk/window/a-ledger-is-known-by-its-ending-or-its-first-bytes", ledger_by_name_or_bytes);
+  g_test_add_func ("/desk/window/a-ledger-is-known-by-its-ending-or-its-first-bytes",
+                   ledger_by_name_or_bytes);
   g_test_add_func ("/desk/slip/every-number-says-how-it-was-got", slip_says_how);
 }

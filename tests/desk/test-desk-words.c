@@ -25,7 +25,11 @@ ages (void)
   {
     double seconds;
     const char *words;
-  } cases[] = { { 90, "2 min" }, { 7200, "2 h" }, { 47 * 3600.0, "47 h" }, { 3 * 86400.0, "3 d" }, { 13 * 365.25 * 86400, "13 y" } };
+  } cases[] = { { 90, "2 min" },
+                { 7200, "2 h" },
+                { 47 * 3600.0, "47 h" },
+                { 3 * 86400.0, "3 d" },
+                { 13 * 365.25 * 86400, "13 y" } };
   for (guint k = 0; k < G_N_ELEMENTS (cases); k++)
     {
       g_autofree char *words = tf_words_dup_age (cases[k].seconds);
@@ -36,8 +40,10 @@ ages (void)
 static void
 split (void)
 {
-  g_autofree char *said = NULL, *why = NULL, *said2 = NULL, *why2 = NULL, *said3 = NULL, *why3 = NULL;
-  tf_words_split_verdict ("breaks Hale's law (cycle 24, sure: + should lead in the south)", &said, &why);
+  g_autofree char *said = NULL, *why = NULL, *said2 = NULL, *why2 = NULL, *said3 = NULL,
+                  *why3 = NULL;
+  tf_words_split_verdict ("breaks Hale's law (cycle 24, sure: + should lead in the south)", &said,
+                          &why);
   g_assert_cmpstr (said, ==, "breaks Hale's law");
   g_assert_cmpstr (why, ==, "cycle 24, sure: + should lead in the south");
   tf_words_split_verdict ("cannot say: near the limb", &said2, &why2);
@@ -51,7 +57,8 @@ split (void)
 static void
 longitude (void)
 {
-  TfMeasure earth = { .cmd_deg = 21.4, .stonyhurst_lon_deg = 21.4 }, off = { .cmd_deg = 21.4, .stonyhurst_lon_deg = -38.6 };
+  TfMeasure earth = { .cmd_deg = 21.4, .stonyhurst_lon_deg = 21.4 },
+            off = { .cmd_deg = 21.4, .stonyhurst_lon_deg = -38.6 };
   TfMeasure map = { .cmd_deg = NAN, .stonyhurst_lon_deg = NAN };
   g_autofree char *none = tf_words_dup_longitude (&earth), *some = tf_words_dup_longitude (&off);
   g_autofree char *no_map = tf_words_dup_longitude (&map);
@@ -67,11 +74,13 @@ every_line (void)
   TfVerdict verdict = { 0 };
   TfSampleRow row;
   tf_sample_row_init (&row);
-  measure.axis_tilt_deg = measure.axis_bearing_deg = measure.separation_deg = measure.imbalance = measure.lat_deg = NAN;
+  measure.axis_tilt_deg = measure.axis_bearing_deg = measure.separation_deg = measure.imbalance
+      = measure.lat_deg = NAN;
   TfReading reading = { &measure, &verdict, &row, "flux-centroid/1 x=1", TRUE };
   for (guint k = 0; k < TF_N_LINES; k++)
     {
-      g_autofree char *value = tf_line_dup_value (k, &reading), *under = tf_line_dup_under (k, &reading);
+      g_autofree char *value = tf_line_dup_value (k, &reading),
+                      *under = tf_line_dup_under (k, &reading);
       g_autofree char *how = tf_line_dup_how (k, &reading);
       g_assert_true (value[0] != '\0');
       g_assert_nonnull (strstr (how, "flux-centroid/1 x=1"));

@@ -1,7 +1,8 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* The window's own parts in one process: words, the writer, the session, the templates. Tests that need a display are skipped without. */
+/* The window's own parts in one process: words, the writer, the session, the templates. Tests
+ * that need a display are skipped without. */
 
 #include "test-desk.h"
 
@@ -10,7 +11,10 @@
 
 #include "tf-desk-resources.h"
 
-enum { WAIT_SECONDS = 10 };
+enum
+{
+  WAIT_SECONDS = 10
+};
 
 static gboolean
 too_late (gpointer data)
@@ -42,7 +46,8 @@ test_desk_path (const char *name)
 static gboolean
 has_hints (gpointer data)
 {
-  return tf_session_get_frame (data) != NULL && g_list_model_get_n_items (tf_session_get_regions (data)) > 0
+  return tf_session_get_frame (data) != NULL
+         && g_list_model_get_n_items (tf_session_get_regions (data)) > 0
          && tf_session_get_progress (data, NULL) == NULL;
 }
 
@@ -61,12 +66,13 @@ test_desk_session (const char *ledger_path)
 
 static gboolean display;
 
-/* The user's folders are not touched. (GLib's own isolation takes the system's settings schemas away too, which GTK needs.) */
+/* The user's folders are not touched. (GLib's own isolation takes the system's settings schemas
+ * away too, which GTK needs.) */
 static char *
 own_folders (void)
 {
-  static const char *const names[]
-      = { "HOME", "XDG_DATA_HOME", "XDG_CONFIG_HOME", "XDG_CACHE_HOME", "XDG_STATE_HOME", "XDG_RUNTIME_DIR" };
+  static const char *const names[] = { "HOME",           "XDG_DATA_HOME",  "XDG_CONFIG_HOME",
+                                       "XDG_CACHE_HOME", "XDG_STATE_HOME", "XDG_RUNTIME_DIR" };
   g_autofree char *top = g_dir_make_tmp ("tiltfield-desk-XXXXXX", NULL);
   g_assert_nonnull (top);
   for (guint k = 0; k < G_N_ELEMENTS (names); k++)
@@ -81,7 +87,8 @@ own_folders (void)
 static void
 remove_all (const char *path)
 {
-  g_autoptr (GDir) folder = g_file_test (path, G_FILE_TEST_IS_SYMLINK) ? NULL : g_dir_open (path, 0, NULL);
+  g_autoptr (GDir) folder
+      = g_file_test (path, G_FILE_TEST_IS_SYMLINK) ? NULL : g_dir_open (path, 0, NULL);
   const char *name;
   while (folder != NULL && (name = g_dir_read_name (folder)) != NULL)
     {

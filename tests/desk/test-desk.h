@@ -12,7 +12,8 @@ typedef gboolean (*TestUntil) (gpointer data);
 void test_desk_wait (const char *what, TestUntil test, gpointer data);
 /** A path in a folder of the program's own, which is removed at its end. */
 char *test_desk_path (const char *name);
-/** A session with a new ledger that holds one demo frame with its hints, open on the plate; person "north desk". */
+/** A session with a new ledger that holds one demo frame with its hints, open on the plate;
+ * person "north desk". */
 TfSession *test_desk_session (const char *ledger_path);
 gboolean test_desk_has_display (void);
 
