@@ -25,6 +25,7 @@ typedef struct
   const float *data; /* the level */
   guint width, height;
   double shrink;     /* frame pixels a level pixel: 2^level */
+  float sky[3];      /* centre and squared reach of the disk in the level; what has no value beyond it needs no look */
   gboolean nearest;
   guint columns, rows; /* of the view */
   double scale;        /* colours a gauss */
@@ -103,30 +104,59 @@ sample_bilinear (const float *data, int width, int height, const float *u, const
     }
 }
 
-static void
-sample_nearest (const Render *r, const float *u, const float *v, guint n, float *out)
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+sample_nearest (const float *data, int width, int height, const float *u, const float *v, guint n, float *out)
 {
+  float right = (float)width - 0.5f, top = (float)height - 0.5f;
   for (guint k = 0; k < n; k++)
     {
-      gboolean inside = u[k] >= -0.5f && u[k] < (float)r->width - 0.5f && v[k] >= -0.5f && v[k] < (float)r->height - 0.5f;
-      out[k] = inside ? r->data[(gsize)(v[k] + 0.5f) * r->width + (gsize)(u[k] + 0.5f)] : NAN;
+      gboolean inside = u[k] >= -0.5f && u[k] < right && v[k] >= -0.5f && v[k] < top;
+      float cu = inside ? u[k] + 0.5f : 0, cv = inside ? v[k] + 0.5f : 0;
+      float value = data[(gssize)(int)cv * width + (int)cu];
+      out[k] = inside ? value : NAN;
+    }
+}
+
+/* TRUE when one of @n values is none. */
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static gboolean
+has_hole (const float *values, guint n)
+{
+  int holes = 0;
+  for (guint k = 0; k < n; k++)
+    holes |= !(values[k] - values[k] <= 0);
+  return holes != 0;
+}
+
+/* Fills what the quick way left open from @first on. */
+static void
+fill_holes (const Render *r, guint first, guint n, gboolean all, const float *u, const float *v, float *out)
+{
+  for (guint k = first; k < first + n; k++)
+    {
+      float dx = u[k] - r->sky[0], dy = v[k] - r->sky[1];
+      if (all || isnan (out[k]))
+        out[k] = dx * dx + dy * dy > r->sky[2] ? NAN : edge_value (r, u[k], v[k]);
     }
 }
 
 static void
 sample_row (const Render *r, const float *u, const float *v, float *out)
 {
+  enum { PIECE = 32 };
+  gboolean small = r->width < 2 || r->height < 2;
   if (r->nearest)
     {
-      sample_nearest (r, u, v, r->columns, out);
+      sample_nearest (r->data, (int)r->width, (int)r->height, u, v, r->columns, out);
       return;
     }
-  gboolean small = r->width < 2 || r->height < 2;
   if (!small)
     sample_bilinear (r->data, (int)r->width, (int)r->height, u, v, r->columns, out);
-  for (guint k = 0; k < r->columns; k++)
-    if (small || isnan (out[k]))
-      out[k] = edge_value (r, u[k], v[k]);
+  for (guint k = 0; k < r->columns; k += PIECE)
+    {
+      guint n = MIN (PIECE, r->columns - k);
+      if (small || has_hole (out + k, n))
+        fill_holes (r, k, n, small, u, v, out);
+    }
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
@@ -274,6 +304,20 @@ render_band (guint band, guint first, guint n, guint worker, gpointer data)
   g_free (grid.v);
 }
 
+/* The sky begins two level pixels beyond the limb, unless the picture has values there. */
+static void
+find_sky (const TfFrame *frame, Render *r)
+{
+  double x, y, radius = tf_geometry_disk_radius (r->geometry);
+  const TfGeometry *g = r->geometry;
+  r->sky[2] = INFINITY;
+  if (!tf_geometry_disk_centre (g, &x, &y) || !(radius > 0) || !isnan (tf_frame_value (frame, 1, 1))
+      || !isnan (tf_frame_value (frame, g->width, g->height)))
+    return;
+  to_level (r, x, y, &r->sky[0], &r->sky[1]);
+  r->sky[2] = (float)((radius / r->shrink + 2) * (radius / r->shrink + 2));
+}
+
 /* Frame pixels a view pixel, in the middle of the view. */
 static double
 coarseness (const TfView *view, const TfGeometry *g)
@@ -324,5 +368,6 @@ tf_picture_render (const TfFrame *frame, const TfView *view, const TfPaint *pain
   render.scale = COLOURS / (2 * paint->range_gauss);
   fill_colours (&render, paint);
   choose_level (frame, &render);
+  find_sky (frame, &render);
   return tf_bands_run (work, render.rows, render_band, &render);
 }
