@@ -74,6 +74,8 @@ const TfNoteKind tf_note_kinds_region[] = {
   { "poles-overlap", TF_NOTE_CAUTION,
     N_ ("The polarities overlap (separation over sum of radii {0:.2f}): the axis depends on how the flux is spread. Compare "
         "with the strong field alone.") },
+  { "potential-unsettled", TF_NOTE_CAUTION,
+    N_ ("The potential field leaves {0:.0f} % of the observed field unexplained: compare with the radial field.") },
   { "saturated-core", TF_NOTE_CAUTION,
     N_ ("{0} pixels share the extreme value of {1:.0f} G: the core seems saturated and the flux is a lower bound.") },
   { "straddles-equator", TF_NOTE_CAUTION,

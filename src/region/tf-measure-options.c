@@ -9,17 +9,16 @@
 #include "tf-measure.h"
 #include "tf-rotation.h"
 
-static const char *const field_names[] = { "radial", "as observed", "potential" };
-/* What can be chosen today: the potential-field estimate is not worked out yet. */
-static const char *const field_choices[] = { "radial", "as observed", NULL };
+static const char *const field_names[] = { "radial", "as observed", "potential", NULL };
 static const char *const floor_names[] = { "local", "even", NULL };
 static const char *const tilt_forms[] = { "planar", "great-circle", NULL };
 
 #define AT(member) offsetof (TfMeasureParams, member)
 
 const TfOption tf_measure_options[] = {
-  { "field", TF_OPTION_CHOICE, "", TF_FIELD_USED_RADIAL, 0, 1, field_choices,
-    N_ ("field that is summed: radial (line-of-sight field over mu; a radial product as it is) or as observed"),
+  { "field", TF_OPTION_CHOICE, "", TF_FIELD_USED_RADIAL, 0, 2, field_names,
+    N_ ("field that is summed: radial (line-of-sight field over mu; a radial product as it is), as observed, or the radial field of the "
+        "potential field that shows the observed one (Leka, Barnes & Wagner 2017)"),
     AT (field_used) },
   { "floor-kind", TF_OPTION_CHOICE, "", TF_FLOOR_LOCAL, 0, 1, floor_names,
     N_ ("local: a floor on the observed field; even: one floor on the field used, the same all over the disk"),
@@ -56,6 +55,10 @@ const TfOption tf_measure_options[] = {
   { "realisations", TF_OPTION_INT, "", 0, 0, 10000, NULL,
     N_ ("seeded noise realisations for the noise term; 0: by its formula"), AT (realisations) },
   { "seed", TF_OPTION_INT, "", 1, 0, G_MAXINT, NULL, N_ ("seed of the noise realisations"), AT (seed) },
+  { "potential-step", TF_OPTION_NUMBER, "Mm", 1.0, 0.2, 20.0, NULL,
+    N_ ("distance of the nodes of the potential field's grid"), AT (potential_step_mm) },
+  { "potential-margin", TF_OPTION_NUMBER, "Mm", 60.0, 0.0, 400.0, NULL,
+    N_ ("surroundings of the region that the potential field's box holds, on all sides"), AT (potential_margin_mm) },
   { NULL },
 };
 

@@ -152,13 +152,14 @@ sum_inside (const Kept *kept, const TfOutline *outline, TfSum sums[2])
 
 /* Left-out areas of the wide cap are not cut: each deformation has its own. */
 static void
-open_kept (Kept *kept, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params, double reach)
+open_kept (Kept *kept, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
+           const TfPotential *potential, double reach)
 {
   double lon, lat, radius;
   tf_outline_get_cap (outline, &lon, &lat, &radius);
   g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_outline_get_time (outline), lon, lat, MIN (radius + reach, 80.0), 0);
   g_autoptr (TfMask) mask = tf_mask_new (frame, cap, params->mu_min, (guint)params->law);
-  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params);
+  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
   keep_pixels (kept, samples);
 }
 
@@ -184,7 +185,7 @@ settle (Trials *trials, TfSpread *spread)
 
 void
 tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-                        TfSpread *spread)
+                        const TfPotential *potential, TfSpread *spread)
 {
   double lon, lat, radius, radius_mm = tf_frame_get_geometry (frame)->radius_mm;
   tf_outline_get_cap (outline, &lon, &lat, &radius);
@@ -196,7 +197,7 @@ tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const Tf
   TfSum sums[2] = { 0 };
   TfAxis base, axis;
   mean = MAX (mean, 0.1);
-  open_kept (&kept, frame, outline, params, amplitude * (REACH + parts[PART_SIZE].share * radius / mean));
+  open_kept (&kept, frame, outline, params, potential, amplitude * (REACH + parts[PART_SIZE].share * radius / mean));
   sum_inside (&kept, outline, sums);
   tf_axis_from_sums (&base, sums, outline, radius_mm, circle);
   for (guint k = 0; k < DEFORMATIONS; k++)

@@ -13,6 +13,7 @@
 #include <glib.h>
 
 #include "tf-measure.h"
+#include "tf-potential.h"
 
 G_BEGIN_DECLS
 
@@ -47,6 +48,7 @@ typedef struct
   guint n;
   const TfMaskPixel *pixels;
   TfSampled *samples;
+  float *added;     /* G as observed: what the potential estimate adds, already in the samples' field; NULL for the others */
   double mean_mu;   /* maps: 1 */
   double mean_abs_z; /* of the unit vectors */
 } TfRegionSamples;
@@ -85,7 +87,9 @@ typedef struct
 } TfSpread;
 
 /* tf-measure-sums.c */
-TfRegionSamples *tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params);
+/** tf_region_samples_new: @potential: (nullable): when it is the field used. */
+TfRegionSamples *tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params,
+                                        const TfPotential *potential);
 void tf_region_samples_free (TfRegionSamples *samples);
 void tf_region_sums (const TfRegionSamples *samples, TfSums *sums);
 void tf_sum_add (TfSum *sum, const TfMaskPixel *pixel, double flux);
@@ -113,7 +117,7 @@ float *tf_region_smooth (const TfRegionSamples *samples, double *rest);
 void tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
                            const TfOutline *outline, TfSpread *spread);
 void tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-                             TfSpread *spread);
+                             const TfPotential *potential, TfSpread *spread);
 
 /* tf-measure-pieces.c */
 typedef struct

@@ -130,6 +130,8 @@ tf_region_smooth (const TfRegionSamples *samples, double *rest)
     {
       gsize at = (gsize)(samples->pixels[k].y - patch.y0) * patch.width + (samples->pixels[k].x - patch.x0);
       out[k] = patch.gaps ? patch.field[at] / patch.weight[at] : patch.field[at];
+      if (samples->added != NULL)
+        out[k] += samples->added[k];
     }
   g_free (patch.field);
   g_free (patch.weight);

@@ -20,7 +20,7 @@ tf_region_scale (const TfMeasureParams *params)
 gboolean
 tf_region_divides (const TfFrame *frame, const TfMeasureParams *params)
 {
-  return params->field_used == TF_FIELD_USED_RADIAL && !tf_geometry_is_map (tf_frame_get_geometry (frame))
+  return params->field_used != TF_FIELD_USED_OBSERVED && !tf_geometry_is_map (tf_frame_get_geometry (frame))
          && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL;
 }
 
@@ -98,8 +98,23 @@ fill_samples (TfRegionSamples *s)
   s->mean_abs_z = sum_z / s->n;
 }
 
+/* The estimate as an observed field that stood upright would show it: times mu. */
+static void
+add_potential (TfRegionSamples *s, const TfPotential *potential)
+{
+  double scale = tf_region_scale (s->params);
+  s->added = g_new (float, s->n);
+  for (guint k = 0; k < s->n; k++)
+    {
+      const TfMaskPixel *pixel = &s->pixels[k];
+      double field = pixel->mu * tf_potential_radial (potential, pixel->unit, pixel->field, pixel->mu);
+      s->added[k] = (float)(scale * (field - pixel->field));
+      s->samples[k].field += s->added[k];
+    }
+}
+
 TfRegionSamples *
-tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params)
+tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params, const TfPotential *potential)
 {
   TfRegionSamples *s = g_new0 (TfRegionSamples, 1);
   s->frame = frame;
@@ -110,6 +125,8 @@ tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasure
   s->samples = g_new (TfSampled, MAX (s->n, 1));
   if (s->n > 0)
     fill_samples (s);
+  if (s->n > 0 && potential != NULL)
+    add_potential (s, potential);
   return s;
 }
 
@@ -119,6 +136,7 @@ tf_region_samples_free (TfRegionSamples *samples)
   if (samples == NULL)
     return;
   g_free (samples->samples);
+  g_free (samples->added);
   g_free (samples);
 }
 

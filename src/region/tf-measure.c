@@ -13,6 +13,8 @@
 
 /* Leading polarity is sure beyond this many sigma of the poles' distance in longitude. */
 static const double SURE_SIGMAS = 2.0;
+/* A share of the observed field that the potential estimate leaves unexplained is said above this. */
+static const double LEFT_SAID = 0.02;
 
 typedef struct
 {
@@ -151,6 +153,8 @@ set_method (TfMeasure *m, const TfRegionSamples *samples)
   const TfMeasureParams *p = samples->params;
   m->time = tf_frame_get_info (samples->frame)->time;
   m->field_used = (TfFieldUsed)p->field_used;
+  if (samples->added == NULL && m->field_used == TF_FIELD_USED_POTENTIAL)
+    m->field_used = TF_FIELD_USED_RADIAL;
   m->floor_kind = (TfFloorKind)p->floor_kind;
   m->scale = p->scale;
   m->noise_gauss = tf_region_scale (p) * tf_region_sigma (samples->frame, samples->mean_mu, samples->mean_abs_z);
@@ -169,7 +173,7 @@ sine_mean (const TfSum sums[2])
 
 static void
 find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
-            const TfOutline *outline)
+            const TfOutline *outline, const TfPotential *potential)
 {
   const TfMeasureParams *p = samples->params;
   set_nothing (&terms->outline);
@@ -178,16 +182,17 @@ find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const Tf
     tf_region_realise (samples, outline, &terms->noise);
   tf_region_floor_term (samples, sums, axis, outline, &terms->floor);
   if (p->outline_term && outline != NULL)
-    tf_region_outline_term (samples->frame, outline, p, &terms->outline);
+    tf_region_outline_term (samples->frame, outline, p, potential, &terms->outline);
 }
 
 static gboolean
-check_params (const TfMeasureParams *params, GError **error)
+check_params (const TfFrame *frame, const TfMeasureParams *params, GError **error)
 {
-  if (params->field_used == TF_FIELD_USED_POTENTIAL)
-    g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_OPTION,
-                         _ ("The potential-field estimate of the radial field is not available yet: "
-                            "choose the radial field or the field as observed."));
+  if (params->field_used == TF_FIELD_USED_POTENTIAL && tf_geometry_is_map (tf_frame_get_geometry (frame))
+      && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL)
+    g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_KIND,
+                         _ ("A map has no line of sight to work a potential field out from: choose the radial field or the field as "
+                            "observed."));
   else if (params->strong_floors < 1.0 + params->floor_step)
     g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_OPTION,
                          _ ("Strong field must lie above the floor by more than the floor's step: "
@@ -200,9 +205,9 @@ check_params (const TfMeasureParams *params, GError **error)
 /* @outline is at the frame's time. */
 static void
 measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
-         const TfMeasureParams *params)
+         const TfMeasureParams *params, const TfPotential *potential)
 {
-  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params);
+  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
   double radius = tf_frame_get_geometry (frame)->radius_mm;
   gboolean circle = params->tilt_form == 1;
   TfSums sums;
@@ -215,7 +220,7 @@ measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline
   tf_region_sums (samples, &sums);
   tf_axis_from_sums (&axis, base, outline, radius, circle);
   tf_region_pieces (samples, axis.flux[0] + axis.flux[1], &pieces);
-  find_terms (&terms, m, samples, &sums, &axis, outline);
+  find_terms (&terms, m, samples, &sums, &axis, outline, potential);
   m->pieces = pieces.n;
   set_pole (&m->positive, frame, &axis, TF_POSITIVE, &base[TF_POSITIVE], &terms);
   set_pole (&m->negative, frame, &axis, TF_NEGATIVE, &base[TF_NEGATIVE], &terms);
@@ -224,6 +229,29 @@ measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline
   set_flux (m, frame, &axis, &terms, params);
   set_witnesses (m, &sums, &axis, &pieces, &terms, radius, circle);
   tf_region_cautions (m, samples, &axis);
+  if (potential != NULL && tf_potential_get_left (potential) > LEFT_SAID)
+    tf_notes_add (m->cautions, "potential-unsettled", "d", 100.0 * tf_potential_get_left (potential));
+}
+
+/* The potential estimate on a box about the mask's pixels, so that it is the same with and without an outline. */
+static TfPotential *
+make_potential (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params)
+{
+  double middle[3] = { 0.0 }, lon, lat, radius = 0.0;
+  guint n = tf_mask_get_n (mask);
+  const TfMaskPixel *pixels = tf_mask_get (mask, 0);
+  for (guint k = 0; k < n; k++)
+    for (guint i = 0; i < 3; i++)
+      middle[i] += pixels[k].unit[i];
+  tf_sphere_lonlat (middle, &lon, &lat);
+  for (guint k = 0; k < n; k++)
+    {
+      double pixel_lon, pixel_lat;
+      tf_sphere_lonlat (pixels[k].unit, &pixel_lon, &pixel_lat);
+      radius = fmax (radius, tf_sphere_distance (lon, lat, pixel_lon, pixel_lat));
+    }
+  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_frame_get_info (frame)->time, lon, lat, CLAMP (radius, 0.01, 80.0), 0);
+  return tf_potential_new (frame, cap, params->potential_step_mm, params->potential_margin_mm);
 }
 
 gboolean
@@ -232,7 +260,7 @@ tf_measure_masked (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const
 {
   g_return_val_if_fail (m != NULL && frame != NULL && mask != NULL && params != NULL, FALSE);
   memset (m, 0, sizeof *m);
-  if (!check_params (params, error))
+  if (!check_params (frame, params, error))
     return FALSE;
   if (tf_mask_get_n (mask) == 0)
     {
@@ -243,8 +271,17 @@ tf_measure_masked (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const
                    path[0] != '\0' ? path : _ ("in memory"));
       return FALSE;
     }
+  gboolean wants = params->field_used == TF_FIELD_USED_POTENTIAL && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL;
   g_autoptr (TfOutline) here = outline != NULL ? tf_mask_outline (frame, outline, (guint)params->law) : NULL;
-  measure (m, frame, mask, here, params);
+  g_autoptr (TfPotential) potential = wants ? make_potential (frame, mask, params) : NULL;
+  if (wants && potential == NULL)
+    {
+      g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_OPTION,
+                           _ ("The potential field cannot be worked out here: the region's surroundings lie beyond the limb, or there is no "
+                              "memory for its box. Choose the radial field, or another frame."));
+      return FALSE;
+    }
+  measure (m, frame, mask, here, params, potential);
   return TRUE;
 }
 

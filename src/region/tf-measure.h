@@ -37,7 +37,7 @@ typedef enum
 {
   TF_FIELD_USED_RADIAL,    /* B_los / mu, or a radial product as it is */
   TF_FIELD_USED_OBSERVED,  /* as observed */
-  TF_FIELD_USED_POTENTIAL, /* potential-field radial estimate */
+  TF_FIELD_USED_POTENTIAL, /* potential-field radial estimate (tf-potential.h); a radial product as it is */
 } TfFieldUsed;
 typedef enum
 {
@@ -65,6 +65,7 @@ typedef struct
   double ephemeral_mx;   /* 3e20 */
   int realisations;      /* 0; 500 on demand: seeded noise realisations instead of the formula */
   int seed;
+  double potential_step_mm, potential_margin_mm; /* 1, 60: grid and surroundings of the potential estimate */
 } TfMeasureParams;
 extern const TfOption tf_measure_options[];
 

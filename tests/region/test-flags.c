@@ -234,24 +234,6 @@ test_nothing (void)
 /* -- options ----------------------------------------------------------------------------------------------- */
 
 static void
-test_potential (void)
-{
-  BuilderFrame how;
-  TfMeasureParams params;
-  TfMeasure m;
-  g_autoptr (GError) error = NULL;
-  frame_at (&how, 0.0, 0.0);
-  g_autoptr (TfFrame) frame = builder_frame (&how, NULL, 0);
-  g_autoptr (TfOutline) outline = builder_cap (0.0, 0.0, 3.0);
-  tf_measure_params_init (&params);
-  params.field_used = TF_FIELD_USED_POTENTIAL;
-  g_assert_false (tf_measure_region (&m, frame, outline, &params, &error));
-  g_assert_error (error, TF_REGION_ERROR, TF_REGION_ERROR_OPTION);
-  g_clear_error (&error);
-  g_assert_false (tf_options_set (tf_measure_options, &params, "field", "potential", &error));
-}
-
-static void
 test_fields (void)
 {
   BuilderFrame how;
@@ -411,7 +393,6 @@ add_flag_tests (void)
   g_test_add_func ("/region/caution/limb-and-equator-are-told", test_limb_and_equator);
   g_test_add_func ("/region/caution/missing-saturated-and-cut-pixels-are-told", test_pixels);
   g_test_add_func ("/region/caution/nothing-above-the-floor-is-told", test_nothing);
-  g_test_add_func ("/region/option/the-potential-field-is-refused-in-words", test_potential);
   g_test_add_func ("/region/option/field-and-scale-do-what-they-say", test_fields);
   g_test_add_func ("/region/option/a-pinned-pole-is-taken-as-it-is", test_pins);
   g_test_add_func ("/region/dipole/two-poles-give-the-closed-form", test_dipole);

@@ -127,6 +127,96 @@ test_bipoles (void)
   check_place (45.0, -5.0, 0.7, 0.02);
 }
 
+/* -- as the field of a measurement ------------------------------------------------------------------------------ */
+
+static void
+measure_as (TfMeasure *m, const BuilderFrame *how, const Charges *charges, int field_used, gboolean product)
+{
+  TfMeasureParams params;
+  BuilderFrame seen_how = *how;
+  g_autoptr (GError) error = NULL;
+  tf_measure_params_init (&params);
+  params.field_used = field_used;
+  params.floor_kind = TF_FLOOR_EVEN;
+  params.floor_gauss = 60.0;
+  seen_how.radial = product;
+  g_autoptr (TfFrame) frame = builder_frame_func (&seen_how, product ? upright : seen, charges);
+  g_autoptr (TfOutline) outline = builder_cap (how->lon, how->lat, 7.0);
+  tf_measure_region (m, frame, outline, &params, &error);
+  g_assert_no_error (error);
+}
+
+static double
+pole_off (const TfMeasure *m, const TfMeasure *truth)
+{
+  return fmax (tf_sphere_distance (m->positive.carrington_lon_deg, m->positive.lat_deg, truth->positive.carrington_lon_deg,
+                                   truth->positive.lat_deg),
+               tf_sphere_distance (m->negative.carrington_lon_deg, m->negative.lat_deg, truth->negative.carrington_lon_deg,
+                                   truth->negative.lat_deg));
+}
+
+/* The truth is the same measurement of the radial field itself. */
+static void
+test_measured (void)
+{
+  static const double places[][2] = { { 30.0, 8.0 }, { -45.0, 12.0 }, { 56.0, -10.0 }, { -64.0, 5.0 } };
+  for (guint k = 0; k < G_N_ELEMENTS (places); k++)
+    {
+      BuilderFrame how;
+      Charges charges;
+      g_auto (TfMeasure) truth = { 0 };
+      g_auto (TfMeasure) potential = { 0 };
+      g_auto (TfMeasure) radial = { 0 };
+      make_bipole (&charges, places[k][0], places[k][1]);
+      builder_init (&how, places[k][0], places[k][1], 2.0);
+      how.half_deg = 13.0;
+      how.fine = 2;
+      how.b0_deg = 0.0;
+      measure_as (&truth, &how, &charges, TF_FIELD_USED_RADIAL, TRUE);
+      measure_as (&potential, &how, &charges, TF_FIELD_USED_POTENTIAL, FALSE);
+      measure_as (&radial, &how, &charges, TF_FIELD_USED_RADIAL, FALSE);
+      g_test_message ("mu %.2f: unsigned flux %.3f (Blos / mu %.3f) of the truth, poles off by %.3f (%.3f) deg, bearing by %.2f (%.2f) deg, noise "
+                      "terms %.3f and %.3f deg", truth.mu, potential.flux_unsigned_mx / truth.flux_unsigned_mx,
+                      radial.flux_unsigned_mx / truth.flux_unsigned_mx, pole_off (&potential, &truth), pole_off (&radial, &truth),
+                      potential.axis_bearing_deg - truth.axis_bearing_deg, radial.axis_bearing_deg - truth.axis_bearing_deg,
+                      potential.tilt_terms.noise, radial.tilt_terms.noise);
+      g_assert_cmpint (potential.field_used, ==, TF_FIELD_USED_POTENTIAL);
+      g_assert_cmpint (potential.leading_polarity, ==, 1);
+      tf_check_near ("unsigned flux over the truth", potential.flux_unsigned_mx / truth.flux_unsigned_mx, 1.0, 0.03);
+      tf_check_between ("poles off, deg", pole_off (&potential, &truth), 0.0, 0.05);
+      tf_check_near ("bearing, deg", potential.axis_bearing_deg, truth.axis_bearing_deg, 0.3);
+      tf_check_between ("poles off over those of Blos / mu", pole_off (&potential, &truth) / pole_off (&radial, &truth), 0.0, 0.2);
+    }
+}
+
+/* The figures of complexity as well: the false line on the limbward side is not there. */
+static void
+test_complexity_of_it (void)
+{
+  BuilderFrame how;
+  Charges charges = { 0 };
+  TfComplexityParams params;
+  TfMeasureParams measure;
+  tf_complexity_params_init (&params);
+  tf_measure_params_init (&measure);
+  params.anyway = TRUE;
+  /* one spot: no polarity inversion near it at all */
+  add_charge (&charges, 52.0, 8.0, 12.0, 2500.0);
+  builder_init (&how, 52.0, 8.0, 2.0);
+  how.half_deg = 13.0;
+  g_autoptr (TfFrame) frame = builder_frame_func (&how, seen, &charges);
+  g_autoptr (TfOutline) outline = builder_cap (52.0, 8.0, 5.0);
+  g_auto (TfComplexity) radial = { 0 };
+  g_auto (TfComplexity) potential = { 0 };
+  tf_complexity_region (&radial, frame, outline, &measure, &params);
+  measure.field_used = TF_FIELD_USED_POTENTIAL;
+  tf_complexity_region (&potential, frame, outline, &measure, &params);
+  g_test_message ("one spot at mu %.2f: inversion line %.0f Mm by Blos / mu, %.0f Mm by the potential estimate", radial.mu, radial.length_mm,
+                  potential.length_mm);
+  tf_check_between ("false line by Blos / mu, Mm", radial.length_mm, 10.0, 200.0);
+  tf_check_near ("false line by the potential estimate, Mm", potential.length_mm, 0.0, 0.0);
+}
+
 static void
 test_not_on_radial_products (void)
 {
@@ -187,10 +277,40 @@ test_outside_the_box (void)
   tf_check_near ("on the far side", tf_potential_radial (potential, unit, 30.0, 0.5), 60.0, 1e-12);
 }
 
+static void
+test_maps_and_products (void)
+{
+  TfGeometry g = { .projection = TF_PROJECTION_CEA, .width = 360, .height = 180, .crpix = { 180.5, 90.5 },
+                   .crval_deg = { 180.0, 0.0 }, .cd = { { 1.0, 0.0 }, { 0.0, 2.0 / 180.0 } }, .radius_mm = TF_RADIUS_MM };
+  BuilderFrame how = { 0 };
+  TfMeasureParams params;
+  g_auto (TfMeasure) m = { 0 };
+  g_auto (TfMeasure) product = { 0 };
+  g_autoptr (GError) error = NULL;
+  tf_measure_params_init (&params);
+  tf_options_set (tf_measure_options, &params, "field", "potential", &error);
+  g_assert_no_error (error);
+  g_assert_cmpint (params.field_used, ==, TF_FIELD_USED_POTENTIAL);
+  g_assert_true (tf_geometry_make (&g));
+  g_autofree float *field = g_new0 (float, 360 * 180);
+  g_autoptr (TfFrame) los = builder_frame_of (&g, &how, field);
+  g_autoptr (TfOutline) outline = tf_outline_new_cap (builder_time (), 100.0, 10.0, 5.0, 0);
+  g_assert_false (tf_measure_region (&m, los, outline, &params, &error));
+  g_assert_error (error, TF_REGION_ERROR, TF_REGION_ERROR_KIND);
+  g_clear_error (&error);
+  how.radial = TRUE;
+  g_autoptr (TfFrame) radial = builder_frame_of (&g, &how, field);
+  g_assert_true (tf_measure_region (&product, radial, outline, &params, &error));
+  g_assert_cmpint (product.field_used, ==, TF_FIELD_USED_RADIAL);
+}
+
 void
 add_potential_tests (void)
 {
   g_test_add_func ("/region/potential/buried-charges-are-met-better-than-by-blos-over-mu", test_bipoles);
+  g_test_add_func ("/region/potential/a-measurement-of-it-is-that-of-the-radial-field", test_measured);
+  g_test_add_func ("/region/potential/it-shows-no-false-line-beside-a-spot", test_complexity_of_it);
+  g_test_add_func ("/region/potential/a-map-is-refused-and-a-radial-product-taken-as-it-is", test_maps_and_products);
   g_test_add_func ("/region/potential/noise-grows-no-more-than-in-blos-over-mu", test_noise);
   g_test_add_func ("/region/potential/radial-products-have-none", test_not_on_radial_products);
   g_test_add_func ("/region/potential/outside-the-box-it-is-blos-over-mu", test_outside_the_box);
