@@ -14,6 +14,8 @@
  * that the result is the same for any number of threads.
  */
 
+static const double STRONGEST_GAUSS = 5000.0;
+
 void
 tf_shot_init (TfShot *shot)
 {
@@ -278,15 +280,17 @@ tf_sun_shoot (const TfSun *sun, TfTime time, const TfShot *shot, guint64 seed, c
   return tf_frame_new (info, pixels, work);
 }
 
+/* 16 bits unless the steps are too fine for them to hold the strongest fields. */
 static gboolean
 write_frame (const char *path, const TfHeader *header, const float *pixels,
              const TfGeometry *geometry, const TfShot *shot, GError **error)
 {
   TfFrameWrite how = { .bitpix = -32, .no_date = TRUE };
+  gboolean fine = 32767 * shot->quantum_gauss < STRONGEST_GAUSS;
   if (shot->quantum_gauss > 0.0)
-    how = (TfFrameWrite){ .bitpix = 16,
+    how = (TfFrameWrite){ .bitpix = fine ? 32 : 16,
                           .bscale = shot->quantum_gauss,
-                          .blank = -32768,
+                          .blank = fine ? G_MININT32 : -32768,
                           .has_blank = TRUE,
                           .compress = TRUE,
                           .no_date = TRUE };
