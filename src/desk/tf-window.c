@@ -377,10 +377,21 @@ restore_preferences (TfWindow *self)
     tf_session_set_palette (self->session, TF_PALETTE_AMBER_INDIGO);
 }
 
+/* The scroller within an AdwStatusPage takes the keyboard and has no name; the page's own title is told already. */
+static void
+pass_over_status_pages (GtkWidget *widget)
+{
+  if (ADW_IS_STATUS_PAGE (widget))
+    gtk_widget_set_focusable (gtk_widget_get_first_child (widget), FALSE);
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL; child = gtk_widget_get_next_sibling (child))
+    pass_over_status_pages (child);
+}
+
 static void
 tf_window_init (TfWindow *self)
 {
   gtk_widget_init_template (GTK_WIDGET (self));
+  pass_over_status_pages (GTK_WIDGET (self->stack));
   self->session = tf_session_new ();
   connect_session (self);
   tf_window_add_actions (self);
