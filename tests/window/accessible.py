@@ -1,0 +1,83 @@
+"""accessible.py: what a screen reader finds: names everywhere, drawings described, everything within reach of the keyboard."""
+import os
+import re
+import tempfile
+
+import harness
+from harness import Failed, Window, fill, scenario
+
+BAD_NAME = re.compile(r"^(Gtk|Adw|Tf)\w*$|^$")
+DRAWINGS = {"image", "canvas", "drawing area", "icon"}
+
+
+def unnamed(window):
+    """Nodes that can be focused or used, or that draw, whose name is empty or the name of a class."""
+    found = []
+    for _, node in window.walk():
+        usable = window.has_state(node, "FOCUSABLE") or node.getRoleName() in DRAWINGS
+        if usable and window.is_laid_out(node) and BAD_NAME.match(node.name or ""):
+            found.append(f"{node.getRoleName()} “{node.name}” in “{node.parent.name if node.parent else ''}”")
+    return found
+
+
+def expect_named(window, when):
+    found = unnamed(window)
+    if found:
+        raise Failed(f"without a name {when}: {len(found)}: " + "; ".join(sorted(set(found))[:12]))
+
+
+@scenario("an empty window names all that it shows and says what one can do")
+def _(given):
+    with Window(given) as w:
+        expect_named(w, "in the empty window")
+        w.wait_text("ledger")
+        w.wait_text("frame")
+
+
+@scenario("a new ledger without frames names all that it shows and says how frames come in")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-new-") as folder, Window(given) as w:
+        ledger = os.path.join(folder, "new.ledger")
+        w.action("make-ledger", w.glib.Variant("(ss)", (ledger, "T")))
+        w.wait_text("no frames yet")
+        expect_named(w, "in a ledger without frames")
+
+
+@scenario("with a ledger open every control and drawing has a name, and plate, dial and wings say what they show")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-accessible-") as folder:
+        ledger = os.path.join(folder, "station.ledger")
+        fill(given, ledger)
+        with Window(given, [ledger]) as w:
+            w.wait("the plate's description", lambda: re.search(r"frame of \d{4}-\d\d-\d\dT.*hints", w.plate()))
+            w.action("next-hint")
+            w.wait("the plate to say what is chosen", lambda: "chosen: hint" in w.plate())
+            w.wait("the dial's description", lambda: re.search(r"Axis at|No axis", w.description("Dial") or ""))
+            w.wait("the wings' description", lambda: re.search(r"\d+ marks?, \d+ hints?|hints? not shown|No marks",
+                                                                w.description("Wings") or ""))
+            expect_named(w, "with a ledger open")
+
+
+@scenario("the tab key reaches the plate, the roll and the slip, and comes round again")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-tab-") as folder:
+        ledger = os.path.join(folder, "station.ledger")
+        fill(given, ledger)
+        with Window(given, [ledger]) as w:
+            w.wait("a frame on the plate", lambda: "frame of" in w.plate())
+            seen = [w.wait("something to have the focus", w.focused_name)]
+            while len(seen) < 60:
+                w.key("Tab")
+                seen.append(w.wait(f"the focus to leave {seen[-1]}",
+                                   lambda: w.focused_name() not in (None, seen[-1]) and w.focused_name()))
+                if seen[-1] == seen[0]:
+                    break
+            if seen[-1] != seen[0]:
+                raise Failed(f"the tab key does not come round: {seen}")
+            missing = [place for place in ("Plate", "Wings", "Undo|Menu", ".*hints.*", "What is known of .*")
+                       if not any(re.fullmatch(place, name, re.S) for name in seen)]
+            if missing:
+                raise Failed(f"the tab key did not reach {missing}: {seen}")
+
+
+harness.main()
