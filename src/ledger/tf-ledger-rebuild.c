@@ -98,7 +98,8 @@ replay_act (TfLedger *scratch, sqlite3_stmt *query, TfNotes *findings, GError **
       return FALSE;
     }
   g_clear_error (&problem);
-  tf_notes_add (findings, "check-act-unreadable", "ssi", scratch->path, id, (int)act.seq);
+  if (tf_notes_get_n (findings) < 10 * TF_MOST_FINDINGS)
+    tf_notes_add (findings, "check-act-unreadable", "ssi", scratch->path, id, (int)act.seq);
   return TRUE;
 }
 
