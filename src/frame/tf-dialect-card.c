@@ -16,7 +16,8 @@ static int
 bare_kind (const TfHeader *header, guint k, const char *text)
 {
   double number;
-  if (tf_header_is_quoted (header, k) || *text == '\0' || strcmp (text, "T") == 0 || strcmp (text, "F") == 0)
+  if (tf_header_is_quoted (header, k) || *text == '\0' || strcmp (text, "T") == 0
+      || strcmp (text, "F") == 0)
     return 0;
   if (g_ascii_strcasecmp (text, "nan") == 0 || g_ascii_strcasecmp (text, "-nan") == 0)
     return 2;
@@ -31,7 +32,8 @@ tf_dialect_bare_text (TfHeader *header, TfNotes *repairs)
   g_autofree char *first = NULL;
   for (guint k = 0; k < tf_header_get_n (header); k++)
     {
-      const char *keyword = tf_header_get_keyword (header, k), *text = tf_header_get (header, keyword);
+      const char *keyword = tf_header_get_keyword (header, k),
+                 *text = tf_header_get (header, keyword);
       if (bare_kind (header, k, text) != 1)
         continue;
       if (found++ == 0)

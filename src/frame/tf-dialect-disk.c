@@ -7,7 +7,8 @@
 #include <math.h>
 #include <string.h>
 
-/* Habits of pictures of the disk. They end as HPLN-TAN/HPLT-TAN, CRPIX, CRVAL, CDELT in arcsec, CROTA2. */
+/* Habits of pictures of the disk. They end as HPLN-TAN/HPLT-TAN, CRPIX, CRVAL, CDELT in arcsec,
+ * CROTA2. */
 
 static void
 set_helioprojective (TfHeader *header)
@@ -23,11 +24,13 @@ type_begins (const TfHeader *header, const char *start)
   return type != NULL && g_ascii_strncasecmp (type, start, strlen (start)) == 0;
 }
 
-/* Centre at (@x, @y), the Sun's radius @radius pixels: scale and centre, axes in arcsec. FALSE without an angular radius. */
+/* Centre at (@x, @y), the Sun's radius @radius pixels: scale and centre, axes in arcsec. FALSE
+ * without an angular radius. */
 static gboolean
 set_centre_and_radius (TfHeader *header, double x, double y, double radius)
 {
-  double scale = tan (tf_header_angular_radius (header)) / radius / TF_ARCSEC; /* TAN: r = tan rho */
+  double scale
+      = tan (tf_header_angular_radius (header)) / radius / TF_ARCSEC; /* TAN: r = tan rho */
   if (!(scale > 0 && scale < 1e4))
     return FALSE;
   set_helioprojective (header);
@@ -50,9 +53,10 @@ gboolean
 tf_dialect_unit_spelling (TfHeader *header, TfNotes *repairs)
 {
   static const char *const spellings[][2] = {
-    { "degree", "deg" },     { "degrees", "deg" },   { "arcseconds", "arcsec" }, { "arcsecond", "arcsec" },
-    { "arcsecs", "arcsec" }, { "asec", "arcsec" },   { "arcsec", "arcsec" },     { "deg", "deg" },
-    { "radians", "rad" },    { "radian", "rad" },
+    { "degree", "deg" },       { "degrees", "deg" },    { "arcseconds", "arcsec" },
+    { "arcsecond", "arcsec" }, { "arcsecs", "arcsec" }, { "asec", "arcsec" },
+    { "arcsec", "arcsec" },    { "deg", "deg" },        { "radians", "rad" },
+    { "radian", "rad" },
   };
   static const char *const words[] = { "CUNIT1", "CUNIT2" };
   gboolean done = FALSE;
@@ -60,7 +64,8 @@ tf_dialect_unit_spelling (TfHeader *header, TfNotes *repairs)
     for (guint k = 0; k < G_N_ELEMENTS (spellings); k++)
       {
         const char *unit = tf_header_get (header, words[w]);
-        if (unit == NULL || g_ascii_strcasecmp (unit, spellings[k][0]) != 0 || strcmp (unit, spellings[k][1]) == 0)
+        if (unit == NULL || g_ascii_strcasecmp (unit, spellings[k][0]) != 0
+            || strcmp (unit, spellings[k][1]) == 0)
           continue;
         tf_notes_add (repairs, "unit-spelling", "sss", words[w], unit, spellings[k][1]);
         tf_header_set (header, words[w], spellings[k][1]);
@@ -73,10 +78,12 @@ tf_dialect_unit_spelling (TfHeader *header, TfNotes *repairs)
 gboolean
 tf_dialect_solar_xy (TfHeader *header, TfNotes *repairs)
 {
-  static const char *const spellings[] = { "solar-x", "solar_x", "solarx", "solar x", "hpln---", "hpln-" };
+  static const char *const spellings[]
+      = { "solar-x", "solar_x", "solarx", "solar x", "hpln---", "hpln-" };
   const char *type = tf_header_get (header, "CTYPE1");
   for (guint k = 0; type != NULL && k < G_N_ELEMENTS (spellings); k++)
-    if (g_ascii_strcasecmp (type, spellings[k]) == 0 || (k > 3 && g_ascii_strcasecmp (type, "hpln") == 0))
+    if (g_ascii_strcasecmp (type, spellings[k]) == 0
+        || (k > 3 && g_ascii_strcasecmp (type, "hpln") == 0))
       {
         tf_notes_add (repairs, "solar-xy", "s", type);
         set_helioprojective (header);
@@ -100,17 +107,20 @@ tf_dialect_missing_ctype (TfHeader *header, TfNotes *repairs)
   return TRUE;
 }
 
-/* CTYPE GONGX, or any without CDELT: centre in CRPIX, radius in FNDLMBMI and FNDLMBMA, pixels; no scale. */
+/* CTYPE GONGX, or any without CDELT: centre in CRPIX, radius in FNDLMBMI and FNDLMBMA, pixels;
+ * no scale. */
 gboolean
 tf_dialect_ground_network (TfHeader *header, TfNotes *repairs)
 {
-  double minor = tf_header_number (header, "FNDLMBMI"), major = tf_header_number (header, "FNDLMBMA");
+  double minor = tf_header_number (header, "FNDLMBMI"),
+         major = tf_header_number (header, "FNDLMBMA");
   double x = tf_header_number (header, "CRPIX1"), y = tf_header_number (header, "CRPIX2");
   double radius = isnan (major) ? minor : isnan (minor) ? major : 0.5 * (minor + major);
   gboolean network = type_begins (header, "GONG") || !tf_header_has (header, "CDELT1");
   if (!network || !(radius > 1) || isnan (x + y) || !set_centre_and_radius (header, x, y, radius))
     return FALSE;
-  tf_notes_add (repairs, "ground-network", "dddd", x, y, radius, tf_header_number (header, "CDELT1"));
+  tf_notes_add (repairs, "ground-network", "dddd", x, y, radius,
+                tf_header_number (header, "CDELT1"));
   return TRUE;
 }
 
@@ -118,7 +128,8 @@ tf_dialect_ground_network (TfHeader *header, TfNotes *repairs)
 gboolean
 tf_dialect_centre_and_radius (TfHeader *header, TfNotes *repairs)
 {
-  double x = tf_header_number (header, "X0"), y = tf_header_number (header, "Y0"), radius = tf_header_number (header, "R0");
+  double x = tf_header_number (header, "X0"), y = tf_header_number (header, "Y0"),
+         radius = tf_header_number (header, "R0");
   double zero_based = 0;
   if (isnan (radius))
     {
@@ -128,8 +139,8 @@ tf_dialect_centre_and_radius (TfHeader *header, TfNotes *repairs)
   if (tf_header_has (header, "CRPIX1") || isnan (x + y) || !(radius > 1)
       || !set_centre_and_radius (header, x + zero_based, y + zero_based, radius))
     return FALSE;
-  tf_notes_add (repairs, "centre-and-radius-in-pixels", "dddd", x + zero_based, y + zero_based, radius,
-                tf_header_number (header, "CDELT1"));
+  tf_notes_add (repairs, "centre-and-radius-in-pixels", "dddd", x + zero_based, y + zero_based,
+                radius, tf_header_number (header, "CDELT1"));
   return TRUE;
 }
 
@@ -140,7 +151,9 @@ tf_dialect_solar_radii (TfHeader *header, TfNotes *repairs)
   const char *unit = tf_header_get (header, "CUNIT1");
   double scale = tf_header_number (header, "CDELT1"), other = tf_header_number (header, "CDELT2");
   double x = tf_header_number (header, "CRPIX1"), y = tf_header_number (header, "CRPIX2");
-  gboolean radii = unit != NULL && (g_ascii_strcasecmp (unit, "solRad") == 0 || g_ascii_strcasecmp (unit, "solar radii") == 0);
+  gboolean radii = unit != NULL
+                   && (g_ascii_strcasecmp (unit, "solRad") == 0
+                       || g_ascii_strcasecmp (unit, "solar radii") == 0);
   if (!radii || !(scale > 0) || isnan (x + y) || !(fabs (scale - other) <= 1e-6 * scale))
     return FALSE;
   x -= tf_header_number (header, "CRVAL1") / scale;
@@ -157,7 +170,8 @@ tf_dialect_pointing_only (TfHeader *header, TfNotes *repairs)
 {
   double x = tf_header_number (header, "XCEN"), y = tf_header_number (header, "YCEN");
   double scale = tf_header_number (header, "CDELT1");
-  if (tf_header_has (header, "CRPIX1") || tf_header_has (header, "CRVAL1") || isnan (x + y) || !(scale > 0))
+  if (tf_header_has (header, "CRPIX1") || tf_header_has (header, "CRVAL1") || isnan (x + y)
+      || !(scale > 0))
     return FALSE;
   if (!tf_header_has (header, "CTYPE1"))
     set_helioprojective (header);
@@ -175,7 +189,8 @@ tf_dialect_missing_cunit (TfHeader *header, TfNotes *repairs)
 {
   const char *unit = tf_header_get (header, "CUNIT1");
   double scale = fabs (tf_header_number (header, "CDELT1"));
-  if (!type_begins (header, "HPLN") || (unit != NULL && *unit != '\0') || tf_header_has (header, "CD1_1"))
+  if (!type_begins (header, "HPLN") || (unit != NULL && *unit != '\0')
+      || tf_header_has (header, "CD1_1"))
     return FALSE;
   const char *taken = scale < 0.02 ? "deg" : "arcsec";
   tf_header_set (header, "CUNIT1", taken);
@@ -187,8 +202,9 @@ tf_dialect_missing_cunit (TfHeader *header, TfNotes *repairs)
 static gboolean
 has_turn (const TfHeader *header)
 {
-  return tf_header_has (header, "PC1_1") || tf_header_has (header, "PC1_2") || tf_header_has (header, "CD1_1")
-         || tf_header_has (header, "CD1_2") || !isnan (tf_header_number (header, "CROTA2"));
+  return tf_header_has (header, "PC1_1") || tf_header_has (header, "PC1_2")
+         || tf_header_has (header, "CD1_1") || tf_header_has (header, "CD1_2")
+         || !isnan (tf_header_number (header, "CROTA2"));
 }
 
 /* CROTA1 or CROTA for CROTA2. */
@@ -204,7 +220,8 @@ tf_dialect_crota_elsewhere (TfHeader *header, TfNotes *repairs)
   return TRUE;
 }
 
-/* The position angle of solar north in the picture, counted from up through left, in place of CROTA2 = -P. */
+/* The position angle of solar north in the picture, counted from up through left, in place of
+ * CROTA2 = -P. */
 gboolean
 tf_dialect_p_angle (TfHeader *header, TfNotes *repairs)
 {
@@ -223,13 +240,16 @@ tf_dialect_p_angle (TfHeader *header, TfNotes *repairs)
   return FALSE;
 }
 
-/* X0, Y0, R_SUN of a picture that was binned or cut afterwards, while CRPIX and CDELT are right: said, not used. */
+/* X0, Y0, R_SUN of a picture that was binned or cut afterwards, while CRPIX and CDELT are
+ * right: said, not used. */
 gboolean
 tf_dialect_stale_pixels (TfHeader *header, TfNotes *repairs)
 {
   double radius = tf_header_number (header, "R_SUN"), x = tf_header_number (header, "X0");
-  double scale = fabs (tf_header_number (header, "CDELT1")), rho = tf_header_angular_radius (header) / TF_ARCSEC;
-  if (!type_begins (header, "HPLN") || !(radius > 1) || !(scale > 0) || !(rho > 0) || !tf_header_has (header, "CRPIX1"))
+  double scale = fabs (tf_header_number (header, "CDELT1")),
+         rho = tf_header_angular_radius (header) / TF_ARCSEC;
+  if (!type_begins (header, "HPLN") || !(radius > 1) || !(scale > 0) || !(rho > 0)
+      || !tf_header_has (header, "CRPIX1"))
     return FALSE;
   if (fabs (radius * scale / rho - 1) < 0.01)
     return FALSE;

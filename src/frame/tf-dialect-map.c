@@ -7,8 +7,8 @@
 #include <math.h>
 #include <string.h>
 
-/* Habits of Carrington maps. They end as CRLN-CEA/CRLT-CEA or CRLN-CAR/CRLT-CAR with both axes in degrees as Paper II has
- * them: for CEA, CDELT2 = (180/pi) d(sin latitude). */
+/* Habits of Carrington maps. They end as CRLN-CEA/CRLT-CEA or CRLN-CAR/CRLT-CAR with both axes
+ * in degrees as Paper II has them: for CEA, CDELT2 = (180/pi) d(sin latitude). */
 
 static const char *
 type_of (const TfHeader *header, const char *word)
@@ -27,7 +27,8 @@ gboolean
 tf_header_is_map (const TfHeader *header)
 {
   const char *type = type_of (header, "CTYPE1");
-  return begins (type, "CRLN") || begins (type, "HGLN") || begins (type, "Carrington") || begins (type, "Long");
+  return begins (type, "CRLN") || begins (type, "HGLN") || begins (type, "Carrington")
+         || begins (type, "Long");
 }
 
 static gboolean
@@ -74,17 +75,20 @@ tf_dialect_carrington_time (TfHeader *header, TfNotes *repairs)
 static double
 columns_told (const TfHeader *header)
 {
-  double first = tf_header_number (header, "LON_FRST"), last = tf_header_number (header, "LON_LAST");
+  double first = tf_header_number (header, "LON_FRST"),
+         last = tf_header_number (header, "LON_LAST");
   return rint (fabs ((last - first) / tf_header_number (header, "LON_STEP"))) + 1;
 }
 
-/* The header of a finer map over a picture of fewer pixels: taken as the whole Sun, and said to lie. */
+/* The header of a finer map over a picture of fewer pixels: taken as the whole Sun, and said to
+ * lie. */
 gboolean
 tf_dialect_whole_map (TfHeader *header, TfNotes *repairs)
 {
   double told = columns_told (header), width = tf_header_number (header, "NAXIS1");
   double height = tf_header_number (header, "NAXIS2"), step = tf_header_number (header, "LON_STEP");
-  if (!tf_header_is_map (header) || !(told > 0) || fabs (told - width) < 1.5 || !(fabs (told * step) > 359))
+  if (!tf_header_is_map (header) || !(told > 0) || fabs (told - width) < 1.5
+      || !(fabs (told * step) > 359))
     return FALSE;
   double pixel = (tf_header_number (header, "CRPIX1") - 0.5) * width / told + 0.5;
   double sign = copysign (1, tf_header_number (header, "CDELT1"));
@@ -146,10 +150,12 @@ gboolean
 tf_dialect_stonyhurst_map (TfHeader *header, TfNotes *repairs)
 {
   const char *type = type_of (header, "CTYPE1");
-  double lon = tf_header_number (header, "CRVAL1"), l0 = tf_earth_l0 (tf_header_time (header), TF_L0_IMAGE);
+  double lon = tf_header_number (header, "CRVAL1"),
+         l0 = tf_earth_l0 (tf_header_time (header), TF_L0_IMAGE);
   if (!begins (type, "HGLN") || strlen (type) != 8 || isnan (lon + l0))
     return FALSE;
-  g_autofree char *first = g_strconcat ("CRLN", type + 4, NULL), *second = g_strconcat ("CRLT", type + 4, NULL);
+  g_autofree char *first = g_strconcat ("CRLN", type + 4, NULL),
+                  *second = g_strconcat ("CRLT", type + 4, NULL);
   tf_header_set (header, "CTYPE1", first);
   tf_header_set (header, "CTYPE2", second);
   tf_header_set_number (header, "CRVAL1", tf_wrap_360 (lon + l0));

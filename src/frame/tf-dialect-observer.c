@@ -6,8 +6,8 @@
 
 #include <math.h>
 
-/* Habits of the observer's place and of the Sun's angular radius. They end as DSUN_OBS (m), CRLN_OBS, CRLT_OBS (deg) and
- * RSUN_OBS (arcsec). */
+/* Habits of the observer's place and of the Sun's angular radius. They end as DSUN_OBS (m),
+ * CRLN_OBS, CRLT_OBS (deg) and RSUN_OBS (arcsec). */
 
 typedef struct
 {
@@ -20,10 +20,12 @@ static gboolean
 take (TfHeader *header, TfNotes *repairs, const Habit *habit)
 {
   double value = tf_header_number (header, habit->from);
-  if (!(value >= habit->low && value <= habit->high) || !isnan (tf_header_number (header, habit->to)))
+  if (!(value >= habit->low && value <= habit->high)
+      || !isnan (tf_header_number (header, habit->to)))
     return FALSE;
   tf_header_set_number (header, habit->to, value * habit->factor);
-  tf_notes_add (repairs, "old-keyword", "sdsd", habit->from, value, habit->to, value * habit->factor);
+  tf_notes_add (repairs, "old-keyword", "sdsd", habit->from, value, habit->to,
+                value * habit->factor);
   return TRUE;
 }
 
@@ -40,12 +42,12 @@ gboolean
 tf_dialect_old_observer (TfHeader *header, TfNotes *repairs)
 {
   static const Habit habits[] = {
-    { "OBS_L0", "CRLN_OBS", 1, -360, 720 },    { "L0", "CRLN_OBS", 1, -360, 720 },
-    { "SOLAR-L0", "CRLN_OBS", 1, -360, 720 },  { "EPH_L0", "CRLN_OBS", 1, -360, 720 },
-    { "CENLON", "CRLN_OBS", 1, -360, 720 },    { "OBS_B0", "CRLT_OBS", 1, -90, 90 },
-    { "SOLAR_B0", "CRLT_OBS", 1, -90, 90 },    { "SOLAR-B0", "CRLT_OBS", 1, -90, 90 },
-    { "EPH_B0", "CRLT_OBS", 1, -90, 90 },      { "B0", "CRLT_OBS", 1, -90, 90 },
-    { "DSUN_AU", "DSUN_OBS", TF_AU_M, 0.01, 100 }, { "OBS_DIST", "DSUN_OBS", TF_AU_M, 0.01, 100 },
+    { "OBS_L0", "CRLN_OBS", 1, -360, 720 },         { "L0", "CRLN_OBS", 1, -360, 720 },
+    { "SOLAR-L0", "CRLN_OBS", 1, -360, 720 },       { "EPH_L0", "CRLN_OBS", 1, -360, 720 },
+    { "CENLON", "CRLN_OBS", 1, -360, 720 },         { "OBS_B0", "CRLT_OBS", 1, -90, 90 },
+    { "SOLAR_B0", "CRLT_OBS", 1, -90, 90 },         { "SOLAR-B0", "CRLT_OBS", 1, -90, 90 },
+    { "EPH_B0", "CRLT_OBS", 1, -90, 90 },           { "B0", "CRLT_OBS", 1, -90, 90 },
+    { "DSUN_AU", "DSUN_OBS", TF_AU_M, 0.01, 100 },  { "OBS_DIST", "DSUN_OBS", TF_AU_M, 0.01, 100 },
     { "DISTANCE", "DSUN_OBS", TF_AU_M, 0.01, 100 },
   };
   if (!isnan (tf_header_number (header, "HGLT_OBS")) || tf_header_is_map (header))
@@ -74,9 +76,9 @@ tf_dialect_angular_radius (TfHeader *header, TfNotes *repairs)
 {
   const double radian = 1 / TF_ARCSEC;
   const Habit habits[] = {
-    { "OBS_R0", "RSUN_OBS", 1, 300, 20000 },   { "RSUN_ARC", "RSUN_OBS", 1, 300, 20000 },
-    { "SOLAR_R", "RSUN_OBS", 1, 300, 20000 },  { "SOLAR-R", "RSUN_OBS", 1, 300, 20000 },
-    { "EPH_R0", "RSUN_OBS", 1, 300, 20000 },   { "SEMIDIAM", "RSUN_OBS", radian, 0.0015, 0.1 },
+    { "OBS_R0", "RSUN_OBS", 1, 300, 20000 },       { "RSUN_ARC", "RSUN_OBS", 1, 300, 20000 },
+    { "SOLAR_R", "RSUN_OBS", 1, 300, 20000 },      { "SOLAR-R", "RSUN_OBS", 1, 300, 20000 },
+    { "EPH_R0", "RSUN_OBS", 1, 300, 20000 },       { "SEMIDIAM", "RSUN_OBS", radian, 0.0015, 0.1 },
     { "RADIUS", "RSUN_OBS", radian, 0.0015, 0.1 },
   };
   return !tf_header_is_map (header) && take_all (header, repairs, habits, G_N_ELEMENTS (habits));

@@ -8,8 +8,9 @@
 
 /* Habits of dates. All end as ISO text in UTC under DATE-OBS, DATE-AVG, DATE-END or T_OBS. */
 
-/* Reads @pattern from @text: a digit d stands for one to d digits, read into the next of @out; a blank for any blanks;
- * all else for itself. Returns: where it ended, NULL when @text is not like that. */
+/* Reads @pattern from @text: a digit d stands for one to d digits, read into the next of @out;
+ * a blank for any blanks; all else for itself. Returns: where it ended, NULL when @text is not
+ * like that. */
 static const char *
 scan (const char *text, const char *pattern, int *out)
 {
@@ -45,7 +46,8 @@ set_time (TfHeader *header, const char *keyword, TfTime time)
     tf_header_set (header, keyword, iso);
 }
 
-/* "hh:mm", "hh:mm:ss", "hh:mm:ss.sss", blanks around allowed: seconds of the day, NaN when it is not that. */
+/* "hh:mm", "hh:mm:ss", "hh:mm:ss.sss", blanks around allowed: seconds of the day, NaN when it
+ * is not that. */
 static double
 read_clock (const char *text)
 {
@@ -63,7 +65,8 @@ tf_dialect_underscore_date (TfHeader *header, TfNotes *repairs)
 {
   static const char *const pairs[][2] = {
     { "DATE_OBS", "DATE-OBS" }, { "DATE-BEG", "DATE-OBS" }, { "DATE_BEG", "DATE-OBS" },
-    { "DATE_END", "DATE-END" }, { "DATE_AVG", "DATE-AVG" }, { "DATE_AVE", "DATE-AVG" }, { "TIME_OBS", "TIME-OBS" },
+    { "DATE_END", "DATE-END" }, { "DATE_AVG", "DATE-AVG" }, { "DATE_AVE", "DATE-AVG" },
+    { "TIME_OBS", "TIME-OBS" },
   };
   gboolean done = FALSE;
   for (guint k = 0; k < G_N_ELEMENTS (pairs); k++)
@@ -90,7 +93,9 @@ read_dotted (const char *text)
     return TF_TIME_UNKNOWN;
   if (*rest == ':')
     second = g_ascii_strtod (rest + 1, &rest);
-  TfTimeScale scale = strcmp (rest, "_TAI") == 0 ? TF_SCALE_TAI : strcmp (rest, "_TT") == 0 ? TF_SCALE_TT : TF_SCALE_UTC;
+  TfTimeScale scale = strcmp (rest, "_TAI") == 0  ? TF_SCALE_TAI
+                      : strcmp (rest, "_TT") == 0 ? TF_SCALE_TT
+                                                  : TF_SCALE_UTC;
   return tf_time_from_calendar (at[0], at[1], at[2], at[3], at[4], second, scale);
 }
 
@@ -136,7 +141,8 @@ tf_dialect_gps_time (TfHeader *header, TfNotes *repairs)
   int date[3];
   const char *type = tf_header_get (header, "CTYPE1");
   double clock = read_clock (tf_header_get (header, "TIME-OBS"));
-  gboolean network = (type != NULL && g_str_has_prefix (type, "GONG")) || tf_header_has (header, "GPSSTAT");
+  gboolean network
+      = (type != NULL && g_str_has_prefix (type, "GONG")) || tf_header_has (header, "GPSSTAT");
   if (!network || !(clock < 86400) || !read_slashed (tf_header_get (header, "DATE-OBS"), date))
     return FALSE;
   TfTime time = calendar_and_clock (date, clock, TF_SCALE_GPS);
@@ -164,10 +170,12 @@ gboolean
 tf_dialect_slash_date (TfHeader *header, TfNotes *repairs)
 {
   int date[3];
-  return read_slashed (tf_header_get (header, "DATE-OBS"), date) && set_date (header, repairs, date);
+  return read_slashed (tf_header_get (header, "DATE-OBS"), date)
+         && set_date (header, repairs, date);
 }
 
-/* "mm-dd-yy" of old observatories, and "dd/mm/yy" of FITS before 1998; 50 to 99 are of the 20th century. */
+/* "mm-dd-yy" of old observatories, and "dd/mm/yy" of FITS before 1998; 50 to 99 are of the 20th
+ * century. */
 gboolean
 tf_dialect_two_digit_year (TfHeader *header, TfNotes *repairs)
 {
@@ -178,7 +186,8 @@ tf_dialect_two_digit_year (TfHeader *header, TfNotes *repairs)
   gboolean dashed = scan (text, "2-2-2", at) != NULL;
   if (!dashed && scan (text, "2/2/2", at) == NULL)
     return FALSE;
-  int date[3] = { at[2] + (at[2] < 50 ? 2000 : 1900), dashed ? at[0] : at[1], dashed ? at[1] : at[0] };
+  int date[3]
+      = { at[2] + (at[2] < 50 ? 2000 : 1900), dashed ? at[0] : at[1], dashed ? at[1] : at[0] };
   return set_date (header, repairs, date);
 }
 
@@ -199,7 +208,8 @@ tf_dialect_date_and_time_apart (TfHeader *header, TfNotes *repairs)
   TfTime time = calendar_and_clock (date, clock, TF_SCALE_UTC);
   if (!tf_time_is_known (time))
     return FALSE;
-  tf_notes_add (repairs, "date-and-time-apart", "ss", tf_header_get (header, "DATE-OBS"), tf_header_get (header, "TIME-OBS"));
+  tf_notes_add (repairs, "date-and-time-apart", "ss", tf_header_get (header, "DATE-OBS"),
+                tf_header_get (header, "TIME-OBS"));
   set_time (header, "DATE-OBS", time);
   return TRUE;
 }
@@ -210,7 +220,8 @@ tf_dialect_mean_hours (TfHeader *header, TfNotes *repairs)
 {
   int date[3];
   double hours = tf_header_number (header, "TAVG-UT");
-  if (!(hours >= 0 && hours < 48) || tf_header_has (header, "DATE-AVG") || !date_only (header, date))
+  if (!(hours >= 0 && hours < 48) || tf_header_has (header, "DATE-AVG")
+      || !date_only (header, date))
     return FALSE;
   TfTime day = tf_time_from_calendar (date[0], date[1], date[2], 0, 0, 0, TF_SCALE_UTC);
   if (!tf_time_is_known (day))
@@ -244,7 +255,8 @@ tf_dialect_time_system (TfHeader *header, TfNotes *repairs)
       int y, mo, d, h, mi;
       double s;
       const char *text = tf_header_get (header, words[k]);
-      if (text != NULL && !g_str_has_suffix (text, "Z") && tf_time_calendar (tf_time_read (text), &y, &mo, &d, &h, &mi, &s))
+      if (text != NULL && !g_str_has_suffix (text, "Z")
+          && tf_time_calendar (tf_time_read (text), &y, &mo, &d, &h, &mi, &s))
         set_time (header, words[k], tf_time_from_calendar (y, mo, d, h, mi, s, scale));
     }
   tf_header_set (header, "TIMESYS", "UTC");

@@ -3,9 +3,10 @@
  */
 #include "tf-info-private.h"
 
-/* Order matters: cards first, then time, observer and radius, which the geometry's repairs lean on; maps last. Every
- * function asks by itself whether it applies. To add a habit: one function in the file of its subject, one row here, one
- * note in tf-note-frame.c, one test in tests/frame/test-dialect.c. */
+/* Order matters: cards first, then time, observer and radius, which the geometry's repairs lean
+ * on; maps last. Every function asks by itself whether it applies. To add a habit: one function
+ * in the file of its subject, one row here, one note in tf-note-frame.c, one test in
+ * tests/frame/test-dialect.c. */
 const TfDialect tf_dialects[] = {
   { "bare-text", NULL, tf_dialect_bare_text },
   { "bare-nan", NULL, tf_dialect_bare_nan },

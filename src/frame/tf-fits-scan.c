@@ -9,8 +9,10 @@
 
 #include "tf-number.h"
 
-/* A walk over the headers of a file before CFITSIO sees it: it divides by the tile sizes that a compressed HDU claims
- * (4.2.0: ZTILE1 = 0 ends the program), so these are held against the picture and the table here. */
+/* A walk over the headers of a file before CFITSIO sees it: it divides by the tile sizes that a
+ * compressed HDU claims (4.2.0: ZTILE1 = 0 ends the program), so these are held against the
+ * picture and the table here.
+ * */
 
 enum
 {
@@ -29,7 +31,8 @@ open_stream (const char *path, gboolean gzip)
   if (stream == NULL || !gzip)
     return (GInputStream *)stream;
   g_autoptr (GZlibDecompressor) unpack = g_zlib_decompressor_new (G_ZLIB_COMPRESSOR_FORMAT_GZIP);
-  GInputStream *unpacked = g_converter_input_stream_new (G_INPUT_STREAM (stream), G_CONVERTER (unpack));
+  GInputStream *unpacked
+      = g_converter_input_stream_new (G_INPUT_STREAM (stream), G_CONVERTER (unpack));
   g_object_unref (stream);
   return unpacked;
 }
@@ -44,7 +47,8 @@ has_end (const char *block)
   return FALSE;
 }
 
-/* The next header, its cards as they stand in @bytes; NULL at the end of the file or when it is not one. */
+/* The next header, its cards as they stand in @bytes; NULL at the end of the file or when it is
+ * not one. */
 static TfHeader *
 next_header (GInputStream *stream, GByteArray *bytes)
 {
@@ -82,19 +86,23 @@ data_bytes (const TfHeader *header)
 {
   double axes = tf_header_number (header, "NAXIS"), product = axes > 0 ? 1 : 0;
   const char *groups = tf_header_get (header, "GROUPS");
-  double parameters = tf_header_number (header, "PCOUNT"), count = tf_header_number (header, "GCOUNT");
+  double parameters = tf_header_number (header, "PCOUNT"),
+         count = tf_header_number (header, "GCOUNT");
   for (guint k = 1; k <= axes && k < 1000; k++)
-    if (!(k == 1 && groups != NULL && strcmp (groups, "T") == 0 && indexed (header, "NAXIS", 1) < 1))
+    if (!(k == 1 && groups != NULL && strcmp (groups, "T") == 0
+          && indexed (header, "NAXIS", 1) < 1))
       product *= indexed (header, "NAXIS", k);
-  return fabs (tf_header_number (header, "BITPIX")) / 8 * (isnan (count) ? 1 : count) * ((isnan (parameters) ? 0 : parameters) + product);
+  return fabs (tf_header_number (header, "BITPIX")) / 8 * (isnan (count) ? 1 : count)
+         * ((isnan (parameters) ? 0 : parameters) + product);
 }
 
 static gboolean
 bad_tiles (const char *path, guint hdu, const char *what, double value, GError **error)
 {
   g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-               _ ("%s, HDU %u: the compressed picture is damaged (%s is %.0f); get the file again from its source"), path, hdu,
-               what, value);
+               _ ("%s, HDU %u: the compressed picture is damaged (%s is %.0f); get the file again "
+                  "from its source"),
+               path, hdu, what, value);
   return FALSE;
 }
 
@@ -102,7 +110,8 @@ bad_tiles (const char *path, guint hdu, const char *what, double value, GError *
 static gboolean
 check_tiles (const TfHeader *header, const char *path, guint hdu, GError **error)
 {
-  double axes = tf_header_number (header, "ZNAXIS"), bits = fabs (tf_header_number (header, "ZBITPIX"));
+  double axes = tf_header_number (header, "ZNAXIS"),
+         bits = fabs (tf_header_number (header, "ZBITPIX"));
   double tiles = 1, pixels = 1, rows = tf_header_number (header, "NAXIS2");
   if (!(axes >= 1 && axes <= MAX_TILE_AXES))
     return bad_tiles (path, hdu, "ZNAXIS", axes, error);
@@ -126,7 +135,8 @@ check_tiles (const TfHeader *header, const char *path, guint hdu, GError **error
       const char *word = tf_header_get (header, name);
       double value = indexed (header, "ZVAL", k);
       gboolean block = word != NULL && strcmp (word, "BLOCKSIZE") == 0;
-      if ((block || (word != NULL && strcmp (word, "BYTEPIX") == 0)) && !(value >= 1 && value <= (block ? 4096 : 8)))
+      if ((block || (word != NULL && strcmp (word, "BYTEPIX") == 0))
+          && !(value >= 1 && value <= (block ? 4096 : 8)))
         return bad_tiles (path, hdu, word, value, error);
     }
   if (!(tiles <= rows))
@@ -155,8 +165,8 @@ is_count (const GByteArray *bytes, guint k, const char *keyword, double most, do
   return *value >= 0 && *value <= most;
 }
 
-/* The words that CFITSIO sizes an extension by stand in their order and are counts (4.2.0 goes on with what was in memory
- * where one is not). */
+/* The words that CFITSIO sizes an extension by stand in their order and are counts (4.2.0 goes
+ * on with what was in memory where one is not). */
 static gboolean
 is_sound (const GByteArray *bytes)
 {
@@ -174,7 +184,8 @@ is_sound (const GByteArray *bytes)
       if (!is_count (bytes, k++, keyword, 1e15, &value))
         return FALSE;
     }
-  return is_count (bytes, k, "PCOUNT", 1e15, &value) && is_count (bytes, k + 1, "GCOUNT", 1e9, &value)
+  return is_count (bytes, k, "PCOUNT", 1e15, &value)
+         && is_count (bytes, k + 1, "GCOUNT", 1e9, &value)
          && (!table || is_count (bytes, k + 2, "TFIELDS", 999, &value));
 }
 

@@ -19,8 +19,8 @@ fail (GError **error, const TfFits *fits, int status, const char *what)
 {
   char reason[FLEN_STATUS] = "";
   fits_get_errstatus (status, reason);
-  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s, HDU %d: %s (CFITSIO: %s)"), fits->path, fits->hdu,
-               what, reason);
+  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s, HDU %d: %s (CFITSIO: %s)"),
+               fits->path, fits->hdu, what, reason);
 }
 
 void
@@ -45,9 +45,11 @@ check_start (TfFits *fits, GError **error)
   g_autoptr (GFileInputStream) stream = g_file_read (file, NULL, &problem);
   guchar head[9] = { 0 };
   gsize n = 0;
-  if (stream == NULL || !g_input_stream_read_all (G_INPUT_STREAM (stream), head, sizeof head, &n, NULL, &problem))
+  if (stream == NULL
+      || !g_input_stream_read_all (G_INPUT_STREAM (stream), head, sizeof head, &n, NULL, &problem))
     {
-      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s cannot be read: %s"), fits->path, problem->message);
+      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s cannot be read: %s"),
+                   fits->path, problem->message);
       return FALSE;
     }
   fits->gzip = head[0] == 0x1f && head[1] == 0x8b;
@@ -58,26 +60,32 @@ check_start (TfFits *fits, GError **error)
       if (!fits->gzip || !g_seekable_seek (G_SEEKABLE (stream), -4, G_SEEK_END, NULL, NULL)
           || !g_input_stream_read_all (G_INPUT_STREAM (stream), tail, 4, &n, NULL, NULL))
         return TRUE;
-      gint64 unpacked = tail[0] | tail[1] << 8 | tail[2] << 16 | (gint64)tail[3] << 24; /* RFC 1952, ISIZE */
+      gint64 unpacked
+          = tail[0] | tail[1] << 8 | tail[2] << 16 | (gint64)tail[3] << 24; /* RFC 1952, ISIZE */
       if (unpacked <= UNPACKED_LIMIT)
         return TRUE;
       g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-                   _ ("%s unpacks to more than 1.5 GB: unpack it (gunzip) and open the plain file"), fits->path);
+                   _ ("%s unpacks to more than 1.5 GB: unpack it (gunzip) and open the plain file"),
+                   fits->path);
       return FALSE;
     }
   g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-               _ ("%s is not a FITS file: it does not begin with SIMPLE. Give a FITS file, plain or packed with gzip"),
+               _ ("%s is not a FITS file: it does not begin with SIMPLE. Give a FITS file, plain "
+                  "or packed with gzip"),
                fits->path);
   return FALSE;
 }
 
-/* The Z-keywords of a compressed HDU stand for the picture's own; the table's keywords are not the picture's. */
+/* The Z-keywords of a compressed HDU stand for the picture's own; the table's keywords are not
+ * the picture's. */
 static void
 map_compressed (TfHeader *header)
 {
-  static const char *const table[] = { "XTENSION", "BITPIX", "NAXIS", "NAXIS1", "NAXIS2", "PCOUNT", "GCOUNT", "TFIELDS",
-                                       "THEAP", "EXTEND", "CHECKSUM", "DATASUM" };
-  static const char *const from[] = { "ZBITPIX", "ZNAXIS", "ZNAXIS1", "ZNAXIS2", "ZNAXIS3", "ZBLANK" };
+  static const char *const table[]
+      = { "XTENSION", "BITPIX",  "NAXIS", "NAXIS1", "NAXIS2",   "PCOUNT",
+          "GCOUNT",   "TFIELDS", "THEAP", "EXTEND", "CHECKSUM", "DATASUM" };
+  static const char *const from[]
+      = { "ZBITPIX", "ZNAXIS", "ZNAXIS1", "ZNAXIS2", "ZNAXIS3", "ZBLANK" };
   for (guint k = 0; k < G_N_ELEMENTS (table); k++)
     tf_header_remove (header, table[k]);
   for (guint k = 0; k < G_N_ELEMENTS (from); k++)
@@ -115,7 +123,8 @@ take_picture (TfFits *fits)
   if (status != 0 || type != IMAGE_HDU)
     return FALSE;
   fits->compressed = fits_is_compressed_image (fits->file, &status);
-  fits_get_img_paramll (fits->file, TF_FITS_AXES, &fits->bitpix, &fits->n_axes, fits->axes, &status);
+  fits_get_img_paramll (fits->file, TF_FITS_AXES, &fits->bitpix, &fits->n_axes, fits->axes,
+                        &status);
   fits_clear_errmsg ();
   if (status != 0 || fits->n_axes < 2 || fits->n_axes > TF_FITS_AXES)
     return FALSE;
@@ -165,14 +174,16 @@ open_file (const char *path, GError **error)
     return NULL;
   if (strlen (path) >= FLEN_FILENAME)
     {
-      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s: the name is too long (1024 bytes at most)"), path);
+      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
+                   _ ("%s: the name is too long (1024 bytes at most)"), path);
       return NULL;
     }
   if (fits_open_diskfile (&fits->file, path, READONLY, &status) != 0)
     {
       fits->file = NULL;
       fits_clear_errmsg ();
-      fail (error, fits, status, _ ("the file is cut short or damaged; get it again from its source"));
+      fail (error, fits, status,
+            _ ("the file is cut short or damaged; get it again from its source"));
       return NULL;
     }
   return g_steal_pointer (&fits);
@@ -185,12 +196,15 @@ tf_fits_open (const char *path, int hdu, GError **error)
   g_autoptr (TfFits) fits = open_file (path, error);
   if (fits == NULL)
     return NULL;
-  gboolean found = hdu > 0 ? move_to (fits, hdu) && take_picture (fits) : take_picture (fits) || tf_fits_next (fits);
+  gboolean found = hdu > 0 ? move_to (fits, hdu) && take_picture (fits)
+                           : take_picture (fits) || tf_fits_next (fits);
   if (found)
     return g_steal_pointer (&fits);
   if (hdu > 0)
     g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-                 _ ("%s: HDU %d is not there, damaged or not a picture; leave the HDU out to take the first picture of the file"), path, hdu);
+                 _ ("%s: HDU %d is not there, damaged or not a picture; leave the HDU out to take "
+                    "the first picture of the file"),
+                 path, hdu);
   else
     g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
                  _ ("%s holds no picture of two axes in any HDU; give a FITS image"), path);
@@ -256,20 +270,26 @@ tf_fits_check_size (const TfFits *fits, GError **error)
   LONGLONG head = 0, data = 0, end = 0;
   fits_get_hduaddrll (fits->file, &head, &data, &end, &status);
   gint64 file_size = fits->file->Fptr->filesize, held = file_size - data;
-  double bytes = (double)fits->axes[0] * (double)fits->axes[1] * (double)count_planes (fits) * ABS (fits->bitpix) / 8;
-  gboolean whole = fits->compressed ? end - 2880 < file_size && bytes < 1e13 : bytes <= (double)held;
+  double bytes = (double)fits->axes[0] * (double)fits->axes[1] * (double)count_planes (fits)
+                 * ABS (fits->bitpix) / 8;
+  gboolean whole
+      = fits->compressed ? end - 2880 < file_size && bytes < 1e13 : bytes <= (double)held;
   if (status == 0 && whole && fits->rice.compressed && !fits->rice.by_rows && !tf_rice_check (fits))
     {
-      fail (error, fits, DATA_DECOMPRESSION_ERR, _ ("a compressed tile is damaged; get the file again from its source"));
+      fail (error, fits, DATA_DECOMPRESSION_ERR,
+            _ ("a compressed tile is damaged; get the file again from its source"));
       return FALSE;
     }
   if (status == 0 && whole)
     return TRUE;
-  g_autofree char *have = g_format_size ((guint64)MAX (held, 0)), *want = g_format_size ((guint64)MIN (bytes, 1e18));
+  g_autofree char *have = g_format_size ((guint64)MAX (held, 0)),
+                  *want = g_format_size ((guint64)MIN (bytes, 1e18));
   g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-               _ ("%s, HDU %d: the header claims %u × %u pixels (%s), the file holds %s of them: it is cut short; get it "
+               _ ("%s, HDU %d: the header claims %u × %u pixels (%s), the file holds %s of them: "
+                  "it is cut short; get it "
                   "again from its source"),
-               fits->path, fits->hdu, tf_fits_get_width (fits), tf_fits_get_height (fits), want, have);
+               fits->path, fits->hdu, tf_fits_get_width (fits), tf_fits_get_height (fits), want,
+               have);
   return FALSE;
 }
 
@@ -293,8 +313,8 @@ tf_fits_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, 
   if (status == 0)
     return TRUE;
   fits_clear_errmsg ();
-  g_autofree char *what = g_strdup_printf (_ ("rows %u to %u cannot be read; get the file again from its source"),
-                                           first + 1, first + n);
+  g_autofree char *what = g_strdup_printf (
+      _ ("rows %u to %u cannot be read; get the file again from its source"), first + 1, first + n);
   fail (error, fits, status, what);
   return FALSE;
 }

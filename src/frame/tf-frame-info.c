@@ -188,7 +188,10 @@ tf_frame_info_read (const TfHeader *header, guint width, guint height)
       const char *type = tf_header_get (repaired, "CTYPE1");
       info->geometry.projection = TF_PROJECTION_NONE;
       if (!tf_time_is_known (info->time))
-        refuse (info, tf_note_new ("no-time-no-place", "s", tf_header_get (header, "DATE-OBS") ? tf_header_get (header, "DATE-OBS") : ""));
+        refuse (info,
+                tf_note_new ("no-time-no-place", "s",
+                             tf_header_get (header, "DATE-OBS") ? tf_header_get (header, "DATE-OBS")
+                                                                : ""));
       else
         refuse (info, tf_note_new ("no-geometry", "s", type != NULL ? type : ""));
     }

@@ -5,9 +5,10 @@
 
 /* TfFrameInfo: what a header says a frame is, after its dialect was repaired.
  *
- * Two steps: repair (a const table of small named functions, tf_dialects, each turning one old or local habit into
- * standard keywords and adding a note that says what it did), then standard (FITS WCS Papers I-II by wcslib; Thompson 2006).
- * Nothing is read from pixels here, so that a header text alone can be judged. A refusal is an answer, not an error.
+ * Two steps: repair (a const table of small named functions, tf_dialects, each turning one old
+ * or local habit into standard keywords and adding a note that says what it did), then standard
+ * (FITS WCS Papers I-II by wcslib; Thompson 2006). Nothing is read from pixels here, so that a
+ * header text alone can be judged. A refusal is an answer, not an error.
  */
 
 #include <glib.h>
@@ -46,8 +47,8 @@ struct _TfFrameInfo
 {
   TfKind kind;
   TfRole role;
-  TfNote *refusal; /* why it cannot be used as a field; NULL when it can */
-  TfTime time;     /* middle of exposure, at the observer */
+  TfNote *refusal;         /* why it cannot be used as a field; NULL when it can */
+  TfTime time;             /* middle of exposure, at the observer */
   const char *time_source; /* the keyword used, or "unknown"; owned by the struct's string pool */
   double time_span_s;      /* exposure; NaN unknown */
   TfGeometry geometry;     /* projection NONE when there is none; holds observer, radius, size */
@@ -68,21 +69,24 @@ struct _TfFrameInfo
  * tf_frame_info_read:
  * @header: as in the file; not changed
  * @width, @height: NAXIS1, NAXIS2 (Z-keywords of a compressed HDU already mapped)
- * Returns: (transfer full): never NULL; role REFUSED with a refusal when nothing can be made of it.
+ * Returns: (transfer full): never NULL; role REFUSED with a refusal when nothing can be made of
+ * it.
  */
 TfFrameInfo *tf_frame_info_read (const TfHeader *header, guint width, guint height);
 TfFrameInfo *tf_frame_info_copy (const TfFrameInfo *info);
 void tf_frame_info_free (TfFrameInfo *info);
 
 /**
- * tf_frame_info_column_time: on a map every column has its own time: the passage of its longitude over the Earth's central
- * meridian in the map's rotation; longitudes run on over the seam, so the two edges are a rotation apart.
+ * tf_frame_info_column_time: on a map every column has its own time: the passage of its
+ * longitude over the Earth's central meridian in the map's rotation; longitudes run on over the
+ * seam, so the two edges are a rotation apart.
  * @x: FITS pixel
- * Returns: unknown off the map and without a rotation number; the frame's own time on model maps and pictures of the disk.
+ * Returns: unknown off the map and without a rotation number; the frame's own time on model
+ * maps and pictures of the disk.
  */
 TfTime tf_frame_info_column_time (const TfFrameInfo *info, double x);
 
-const char *tf_kind_name (TfKind kind);        /* "disk" "cut-out" "map" "model map" "unknown" */
+const char *tf_kind_name (TfKind kind); /* "disk" "cut-out" "map" "model map" "unknown" */
 TfKind tf_kind_from_name (const char *name);
 const char *tf_role_name (TfRole role);        /* "field" "intensity" "refused" */
 const char *tf_field_name (TfFieldKind field); /* "los" "radial" "unknown" */
@@ -90,9 +94,9 @@ const char *tf_field_name (TfFieldKind field); /* "los" "radial" "unknown" */
 /** TfDialect: one habit of headers. */
 typedef struct
 {
-  const char *name;                                         /* "centre-and-radius-in-pixels" */
-  gboolean (*applies) (const TfHeader *header);             /* NULL: always asked, repair decides */
-  gboolean (*repair) (TfHeader *header, TfNotes *repairs);  /* TRUE when it changed something and noted it */
+  const char *name;                                        /* "centre-and-radius-in-pixels" */
+  gboolean (*applies) (const TfHeader *header);            /* NULL: always asked, repair decides */
+  gboolean (*repair) (TfHeader *header, TfNotes *repairs); /* TRUE: changed and noted something */
 } TfDialect;
 /** tf_dialects: in the order in which they are tried; ends with name NULL. */
 extern const TfDialect tf_dialects[];

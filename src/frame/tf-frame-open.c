@@ -17,14 +17,17 @@
 static TfFrameInfo *
 read_info (const TfFits *fits)
 {
-  TfFrameInfo *info = tf_frame_info_read (tf_fits_get_header (fits), tf_fits_get_width (fits), tf_fits_get_height (fits));
+  TfFrameInfo *info = tf_frame_info_read (tf_fits_get_header (fits), tf_fits_get_width (fits),
+                                          tf_fits_get_height (fits));
   info->n_planes = tf_fits_get_planes (fits);
   return info;
 }
 
-/* The picture asked for; when none is named, the first with the @wanted role, else the first of all. */
+/* The picture asked for; when none is named, the first with the @wanted role, else the first of
+ * all. */
 static TfFits *
-choose (const char *path, const TfFrameSpec *spec, TfRole wanted, TfFrameInfo **info, GError **error)
+choose (const char *path, const TfFrameSpec *spec, TfRole wanted, TfFrameInfo **info,
+        GError **error)
 {
   int hdu = spec != NULL ? spec->hdu : 0;
   g_autoptr (TfFits) fits = tf_fits_open (path, hdu, error);
@@ -64,14 +67,16 @@ tf_frame_look (const char *path, const TfFrameSpec *spec, int *hdu_used, GError 
 
 /* -- pixels ---------------------------------------------------------------------------------- */
 
+/* handles: one a worker, opened when first needed; first is worker 0's, and the only one when
+ * the file cannot be shared. mutex guards error. */
 typedef struct
 {
-  TfFits *first;    /* the handle that is open already: worker 0's, and everybody's when it cannot be shared */
-  TfFits **handles; /* one a worker, opened when first needed */
+  TfFits *first;
+  TfFits **handles;
   guint width, plane;
   double to_gauss, fill;
   float *pixels;
-  GMutex mutex; /* guards error, and first when it is shared */
+  GMutex mutex;
   GError *error;
 } Reading;
 
@@ -131,8 +136,8 @@ read_band (guint band, guint first, guint n, guint worker, gpointer data)
   TfFits *fits = handle_of (reading, worker);
   if (fits == NULL || !read_with (reading, fits, first, n))
     return;
-  clean (reading->pixels + (gsize)first * reading->width, (gsize)n * reading->width, (float)reading->to_gauss,
-         (float)reading->fill);
+  clean (reading->pixels + (gsize)first * reading->width, (gsize)n * reading->width,
+         (float)reading->to_gauss, (float)reading->fill);
 }
 
 static gboolean
@@ -140,20 +145,28 @@ cancelled (const TfWork *work, const char *path, GError **error)
 {
   if (work == NULL || !tf_cancel_is_raised (work->cancel))
     return FALSE;
-  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED, _ ("%s: opening was cancelled"), path);
+  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED, _ ("%s: opening was cancelled"),
+               path);
   return TRUE;
 }
 
 static gboolean
-read_pixels (TfFits *fits, const TfFrameInfo *info, guint plane, float *pixels, const TfWork *work, GError **error)
+read_pixels (TfFits *fits, const TfFrameInfo *info, guint plane, float *pixels, const TfWork *work,
+             GError **error)
 {
   guint height = tf_fits_get_height (fits);
-  TfWork serial = { .pool = work != NULL ? work->pool : NULL, .cancel = work != NULL ? work->cancel : NULL };
+  TfWork serial
+      = { .pool = work != NULL ? work->pool : NULL, .cancel = work != NULL ? work->cancel : NULL };
   const TfWork *use = tf_fits_may_share (fits) ? work : &serial;
   guint n = tf_workers_get_n (use != NULL ? use->workers : NULL);
   g_autofree TfFits **handles = g_new0 (TfFits *, n);
-  Reading reading = { .first = fits, .handles = handles, .width = tf_fits_get_width (fits), .plane = plane,
-                      .to_gauss = info->to_gauss, .fill = info->fill_value, .pixels = pixels };
+  Reading reading = { .first = fits,
+                      .handles = handles,
+                      .width = tf_fits_get_width (fits),
+                      .plane = plane,
+                      .to_gauss = info->to_gauss,
+                      .fill = info->fill_value,
+                      .pixels = pixels };
   g_mutex_init (&reading.mutex);
   tf_bands_run (use, height, read_band, &reading);
   g_mutex_clear (&reading.mutex);
@@ -245,10 +258,11 @@ check_role (const TfFrameInfo *info, TfRole wanted, const char *path, GError **e
     return TRUE;
   g_autofree char *why = info->refusal != NULL ? tf_note_dup_text (info->refusal, FALSE) : NULL;
   if (wanted == TF_ROLE_INTENSITY && info->role == TF_ROLE_FIELD)
-    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_REFUSED, _ ("%s is a magnetogram; a companion is an intensity picture"),
-                 path);
+    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_REFUSED,
+                 _ ("%s is a magnetogram; a companion is an intensity picture"), path);
   else
-    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_REFUSED, "%s: %s", path, why != NULL ? why : "");
+    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_REFUSED, "%s: %s", path,
+                 why != NULL ? why : "");
   return FALSE;
 }
 
@@ -258,13 +272,15 @@ choose_plane (const TfFits *fits, const TfFrameSpec *spec, const char *path, GEr
   int plane = spec != NULL && spec->plane > 0 ? spec->plane : 1;
   if ((guint)plane <= tf_fits_get_planes (fits))
     return (guint)plane;
-  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s, HDU %d has %u planes; plane %d was asked for"), path,
-               tf_fits_get_hdu (fits), tf_fits_get_planes (fits), plane);
+  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
+               _ ("%s, HDU %d has %u planes; plane %d was asked for"), path, tf_fits_get_hdu (fits),
+               tf_fits_get_planes (fits), plane);
   return 0;
 }
 
 static TfFrame *
-open_role (const char *path, const TfFrameSpec *spec, TfRole wanted, const TfWork *work, GError **error)
+open_role (const char *path, const TfFrameSpec *spec, TfRole wanted, const TfWork *work,
+           GError **error)
 {
   g_return_val_if_fail (path != NULL, NULL);
   g_autoptr (TfFrameInfo) info = NULL;
@@ -278,11 +294,13 @@ open_role (const char *path, const TfFrameSpec *spec, TfRole wanted, const TfWor
                                     (gsize)tf_fits_get_width (fits) * tf_fits_get_height (fits));
   if (pixels == NULL)
     {
-      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_MEMORY, _ ("%s: there is not enough memory for %u × %u pixels"),
-                   path, tf_fits_get_width (fits), tf_fits_get_height (fits));
+      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_MEMORY,
+                   _ ("%s: there is not enough memory for %u × %u pixels"), path,
+                   tf_fits_get_width (fits), tf_fits_get_height (fits));
       return NULL;
     }
-  if (!read_pixels (fits, info, plane, tf_pixels_get (pixels), work, error) || cancelled (work, path, error))
+  if (!read_pixels (fits, info, plane, tf_pixels_get (pixels), work, error)
+      || cancelled (work, path, error))
     {
       tf_pixels_unref (pixels);
       return NULL;
@@ -300,7 +318,8 @@ tf_frame_open (const char *path, const TfFrameSpec *spec, const TfWork *work, GE
 }
 
 TfFrame *
-tf_frame_open_companion (const char *path, const TfFrameSpec *spec, const TfWork *work, GError **error)
+tf_frame_open_companion (const char *path, const TfFrameSpec *spec, const TfWork *work,
+                         GError **error)
 {
   return open_role (path, spec, TF_ROLE_INTENSITY, work, error);
 }
@@ -308,7 +327,10 @@ tf_frame_open_companion (const char *path, const TfFrameSpec *spec, const TfWork
 char *
 tf_frame_file_checksum (const char *path, const TfCancel *cancel, GError **error)
 {
-  enum { PIECE = 1 << 18 };
+  enum
+  {
+    PIECE = 1 << 18
+  };
   g_autoptr (GFile) file = g_file_new_for_path (path);
   g_autoptr (GError) problem = NULL;
   g_autoptr (GFileInputStream) stream = g_file_read (file, NULL, &problem);
@@ -324,8 +346,10 @@ tf_frame_file_checksum (const char *path, const TfCancel *cancel, GError **error
   if (n == 0)
     return g_strdup (g_checksum_get_string (sum));
   if (n < 0)
-    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s cannot be read: %s"), path, problem->message);
+    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s cannot be read: %s"), path,
+                 problem->message);
   else
-    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED, _ ("%s: the checksum was cancelled"), path);
+    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED,
+                 _ ("%s: the checksum was cancelled"), path);
   return NULL;
 }

@@ -5,5 +5,7 @@
 
 #include "tf-frame.h"
 
-/** tf_frame_new_take: @info and @pixels are taken; noise unless the role is INTENSITY. NULL: no memory. */
-TfFrame *tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu, const TfWork *work);
+/** tf_frame_new_take: @info and @pixels are taken; noise unless the role is INTENSITY. NULL: no
+ * memory. */
+TfFrame *tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu,
+                            const TfWork *work);

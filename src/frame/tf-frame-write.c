@@ -15,16 +15,19 @@
 
 /* Written by this file or by CFITSIO, never copied from the caller's header. */
 static const char *const structural[] = {
-  "SIMPLE", "XTENSION", "BITPIX", "NAXIS",  "NAXIS1",   "NAXIS2",  "NAXIS3", "EXTEND", "PCOUNT", "GCOUNT", "TFIELDS",
-  "BSCALE", "BZERO",    "BLANK",  "THEAP",  "CHECKSUM", "DATASUM", "DATE",   "END",    "LONGSTRN", NULL,
+  "SIMPLE", "XTENSION", "BITPIX",  "NAXIS",   "NAXIS1", "NAXIS2",   "NAXIS3",
+  "EXTEND", "PCOUNT",   "GCOUNT",  "TFIELDS", "BSCALE", "BZERO",    "BLANK",
+  "THEAP",  "CHECKSUM", "DATASUM", "DATE",    "END",    "LONGSTRN", NULL,
 };
 
 static gboolean
 is_structural (const char *keyword)
 {
-  return g_strv_contains (structural, keyword) || (keyword[0] == 'Z' && g_strv_contains (structural, keyword + 1))
-         || g_str_has_prefix (keyword, "ZTILE") || g_str_has_prefix (keyword, "ZVAL") || g_str_has_prefix (keyword, "ZNAME")
-         || g_str_has_prefix (keyword, "ZCMPTYP") || g_str_has_prefix (keyword, "TTYPE") || g_str_has_prefix (keyword, "TFORM");
+  return g_strv_contains (structural, keyword)
+         || (keyword[0] == 'Z' && g_strv_contains (structural, keyword + 1))
+         || g_str_has_prefix (keyword, "ZTILE") || g_str_has_prefix (keyword, "ZVAL")
+         || g_str_has_prefix (keyword, "ZNAME") || g_str_has_prefix (keyword, "ZCMPTYP")
+         || g_str_has_prefix (keyword, "TTYPE") || g_str_has_prefix (keyword, "TFORM");
 }
 
 static void
@@ -34,7 +37,8 @@ write_header (fitsfile *file, const TfHeader *header, int *status)
   gboolean told_long = FALSE;
   for (guint k = 0; header != NULL && k < tf_header_get_n (header); k++)
     {
-      const char *keyword = tf_header_get_keyword (header, k), *text = tf_header_get (header, keyword);
+      const char *keyword = tf_header_get_keyword (header, k),
+                 *text = tf_header_get (header, keyword);
       if (is_structural (keyword))
         continue;
       if (tf_header_is_quoted (header, k) && strlen (text) > 60)
@@ -60,7 +64,8 @@ write_scaling (fitsfile *file, const TfFrameWrite *how, int *status)
   fits_write_key (file, TDOUBLE, "BSCALE", &scale, "physical = stored * BSCALE + BZERO", status);
   fits_write_key (file, TDOUBLE, "BZERO", &zero, NULL, status);
   if (how->has_blank)
-    fits_write_key (file, TLONGLONG, "BLANK", &blank, "stored value of pixels without a value", status);
+    fits_write_key (file, TLONGLONG, "BLANK", &blank, "stored value of pixels without a value",
+                    status);
   fits_set_bscale (file, 1.0, 0.0, status);
 }
 
@@ -75,7 +80,8 @@ to_stored (float value, const TfFrameWrite *how)
 
 /* CFITSIO compresses a tile only from the type it is stored in. */
 static void
-write_integers (fitsfile *file, const float *line, LONGLONG first, guint width, const TfFrameWrite *how, int *status)
+write_integers (fitsfile *file, const float *line, LONGLONG first, guint width,
+                const TfFrameWrite *how, int *status)
 {
   g_autofree int *whole = g_new (int, width);
   g_autofree short *half = how->bitpix == 16 ? g_new (short, width) : NULL;
@@ -92,7 +98,8 @@ write_integers (fitsfile *file, const float *line, LONGLONG first, guint width, 
 }
 
 static void
-write_pixels (fitsfile *file, const float *pixels, guint width, guint height, const TfFrameWrite *how, int *status)
+write_pixels (fitsfile *file, const float *pixels, guint width, guint height,
+              const TfFrameWrite *how, int *status)
 {
   for (guint row = 0; row < height && *status == 0; row++)
     {
@@ -105,7 +112,8 @@ write_pixels (fitsfile *file, const float *pixels, guint width, guint height, co
     }
 }
 
-/* CHECKSUM and DATASUM without the time in their comments that CFITSIO would add: equal input, equal bytes. */
+/* CHECKSUM and DATASUM without the time in their comments that CFITSIO would add: equal input,
+ * equal bytes. */
 static void
 write_sums (fitsfile *file, int *status)
 {
@@ -124,8 +132,8 @@ write_sums (fitsfile *file, int *status)
 }
 
 static int
-write_file (const char *path, const TfHeader *header, const float *pixels, guint width, guint height,
-            const TfFrameWrite *how)
+write_file (const char *path, const TfHeader *header, const float *pixels, guint width,
+            guint height, const TfFrameWrite *how)
 {
   fitsfile *file = NULL;
   int status = 0, closing = 0;
@@ -154,23 +162,27 @@ static gboolean
 check_how (const TfFrameWrite *how, GError **error)
 {
   gboolean integer = how->bitpix == 16 || how->bitpix == 32;
-  if ((integer && fabs (how->bscale) > 0 && isfinite (how->bzero)) || (how->bitpix == -32 && !how->compress))
+  if ((integer && fabs (how->bscale) > 0 && isfinite (how->bzero))
+      || (how->bitpix == -32 && !how->compress))
     return TRUE;
   g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_WRITE,
-               _ ("a frame is written as 16 or 32 bit integers with a scale, or as 32 bit floats without compression; "
+               _ ("a frame is written as 16 or 32 bit integers with a scale, or as 32 bit floats "
+                  "without compression; "
                   "asked was BITPIX %d"),
                how->bitpix);
   return FALSE;
 }
 
 gboolean
-tf_frame_write (const char *path, const TfHeader *header, const float *pixels, guint width, guint height,
-                const TfFrameWrite *how, GError **error)
+tf_frame_write (const char *path, const TfHeader *header, const float *pixels, guint width,
+                guint height, const TfFrameWrite *how, GError **error)
 {
-  g_return_val_if_fail (path != NULL && pixels != NULL && how != NULL && width > 0 && height > 0, FALSE);
+  g_return_val_if_fail (path != NULL && pixels != NULL && how != NULL && width > 0 && height > 0,
+                        FALSE);
   if (!check_how (how, error))
     return FALSE;
-  g_autofree char *mark = g_uuid_string_random (), *part = g_strdup_printf ("%s.%.8s.part", path, mark);
+  g_autofree char *mark = g_uuid_string_random (),
+                  *part = g_strdup_printf ("%s.%.8s.part", path, mark);
   int status = write_file (part, header, pixels, width, height, how);
   if (status == 0 && g_rename (part, path) == 0)
     return TRUE;
@@ -181,7 +193,9 @@ tf_frame_write (const char *path, const TfHeader *header, const float *pixels, g
     g_strlcpy (reason, g_strerror (errno), sizeof reason);
   fits_clear_errmsg ();
   g_unlink (part);
-  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_WRITE,
-               _ ("%s cannot be written: %s. See that the folder is there, may be written to, and has room"), path, reason);
+  g_set_error (
+      error, TF_FRAME_ERROR, TF_FRAME_ERROR_WRITE,
+      _ ("%s cannot be written: %s. See that the folder is there, may be written to, and has room"),
+      path, reason);
   return FALSE;
 }

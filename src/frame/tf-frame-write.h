@@ -3,8 +3,8 @@
  */
 #pragma once
 
-/* Writing frames: what the simulator and the stamps need. Headers carry DATE, CHECKSUM and DATASUM; files are written
- * beside the target and renamed. */
+/* Writing frames: what the simulator and the stamps need. Headers carry DATE, CHECKSUM and
+ * DATASUM; files are written beside the target and renamed. */
 
 #include <glib.h>
 
@@ -18,12 +18,13 @@ typedef struct
   double bscale, bzero; /* for integers */
   gint64 blank;         /* integer value of NaN pixels */
   gboolean has_blank;
-  gboolean compress;    /* RICE tile compression, rows as tiles (integers only) */
-  gboolean no_date;     /* leave DATE out: equal input gives equal bytes */
+  gboolean compress; /* RICE tile compression, rows as tiles (integers only) */
+  gboolean no_date;  /* leave DATE out: equal input gives equal bytes */
 } TfFrameWrite;
 
-/** tf_frame_write: @header: cards to write besides the structural ones; @pixels: width*height floats, physical values. */
-gboolean tf_frame_write (const char *path, const TfHeader *header, const float *pixels, guint width, guint height,
-                         const TfFrameWrite *how, GError **error);
+/** tf_frame_write: @header: cards to write besides the structural ones; @pixels: width*height
+ * floats, physical values. */
+gboolean tf_frame_write (const char *path, const TfHeader *header, const float *pixels, guint width,
+                         guint height, const TfFrameWrite *how, GError **error);
 
 G_END_DECLS

@@ -21,10 +21,11 @@ struct _TfFrame
   guint n_levels;
 };
 
-G_DEFINE_QUARK (tf-frame-error, tf_frame_error)
+G_DEFINE_QUARK (tf - frame - error, tf_frame_error)
 
 TfFrame *
-tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu, const TfWork *work)
+tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu,
+                   const TfWork *work)
 {
   TfFrame *frame = g_atomic_rc_box_new0 (TfFrame);
   frame->info = info;

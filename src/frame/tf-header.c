@@ -80,7 +80,8 @@ tf_header_copy (const TfHeader *header)
 
 /* -- reading --------------------------------------------------------------------------------- */
 
-/* The string after the opening quote at @s; a doubled quote is one, a missing end is the end of the line. */
+/* The string after the opening quote at @s; a doubled quote is one, a missing end is the end of
+ * the line. */
 static char *
 read_quoted (const char *s)
 {
@@ -96,7 +97,8 @@ read_quoted (const char *s)
   return g_strstrip (g_string_free (text, FALSE));
 }
 
-/* A value without quotes ends at the comment's slash; a slash between two digits is part of a date. */
+/* A value without quotes ends at the comment's slash; a slash between two digits is part of a
+ * date. */
 static char *
 read_bare (const char *s)
 {
@@ -122,7 +124,8 @@ join (TfHeader *header, const char *line)
   last->text = whole;
 }
 
-/* The keyword before the '=' at most eight places in: FALSE when the line is not a card with a value. */
+/* The keyword before the '=' at most eight places in: FALSE when the line is not a card with a
+ * value. */
 static gboolean
 read_keyword (const char *line, char keyword[KEYWORD + 1], const char **value)
 {
@@ -187,7 +190,8 @@ tf_header_read (const char *text, gssize n_bytes)
       gsize length = MIN (CARD, n - at), step = length;
       if (lines)
         {
-          for (length = 0; at + length < n && text[at + length] != '\n' && text[at + length] != '\r';)
+          for (length = 0;
+               at + length < n && text[at + length] != '\n' && text[at + length] != '\r';)
             length++;
           step = length + 1;
         }
@@ -244,7 +248,8 @@ tf_header_int (const TfHeader *header, const char *keyword, gint64 fallback)
   if (text != NULL && tf_number_read_int (text, &value))
     return value;
   double number = tf_header_number (header, keyword);
-  return fabs (number) < 9e15 && fabs (number - rint (number)) < 1e-9 ? (gint64)rint (number) : fallback;
+  return fabs (number) < 9e15 && fabs (number - rint (number)) < 1e-9 ? (gint64)rint (number)
+                                                                      : fallback;
 }
 
 gboolean

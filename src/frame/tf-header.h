@@ -5,9 +5,10 @@
 
 /* TfHeader: the cards of one FITS header, in order, as text.
  *
- * Keywords are upper case. A value is kept as its text without quotes and outer blanks, with a flag that tells
- * whether it was quoted; unquoted strings and bare nan cards are kept as they stand. HISTORY, COMMENT and blank
- * cards are dropped. CONTINUE cards are joined. Repairs edit a header, so that what follows reads only standard words.
+ * Keywords are upper case. A value is kept as its text without quotes and outer blanks, with a
+ * flag that tells whether it was quoted; unquoted strings and bare nan cards are kept as they
+ * stand. HISTORY, COMMENT and blank cards are dropped. CONTINUE cards are joined. Repairs edit
+ * a header, so that what follows reads only standard words.
  */
 
 #include <glib.h>
@@ -16,8 +17,9 @@ G_BEGIN_DECLS
 
 typedef struct _TfHeader TfHeader;
 
-/** tf_header_read: from 80-character cards without line ends (@n_bytes a multiple of 80 or less at the end), or from lines of text, one
- * card a line: told apart by the first line end. Never fails: what is not a card is left out. */
+/** tf_header_read: from 80-character cards without line ends (@n_bytes a multiple of 80 or less
+ * at the end), or from lines of text, one card a line: told apart by the first line end. Never
+ * fails: what is not a card is left out. */
 TfHeader *tf_header_read (const char *text, gssize n_bytes);
 TfHeader *tf_header_new (void);
 TfHeader *tf_header_copy (const TfHeader *header);

@@ -9,12 +9,14 @@
 #include <wcslib/wcs.h>
 #include <wcslib/wcshdr.h>
 
-/* The standard step: the repaired header's WCS words of the first two axes through wcslib (Papers I and II), which knows
- * the precedence of PC, CD and CROTA, the units and the defaults. */
+/* The standard step: the repaired header's WCS words of the first two axes through wcslib
+ * (Papers I and II), which knows the precedence of PC, CD and CROTA, the units and the
+ * defaults. */
 
 static const char *const wcs_words[] = {
-  "CTYPE1", "CTYPE2", "CUNIT1", "CUNIT2", "CRPIX1", "CRPIX2", "CRVAL1",  "CRVAL2",  "CDELT1", "CDELT2", "PC1_1", "PC1_2",
-  "PC2_1",  "PC2_2",  "CD1_1",  "CD1_2",  "CD2_1",  "CD2_2",  "CROTA2",  "LONPOLE", "LATPOLE", "PV2_1", "PV1_3", "PV1_4",
+  "CTYPE1", "CTYPE2", "CUNIT1", "CUNIT2",  "CRPIX1",  "CRPIX2", "CRVAL1", "CRVAL2",
+  "CDELT1", "CDELT2", "PC1_1",  "PC1_2",   "PC2_1",   "PC2_2",  "CD1_1",  "CD1_2",
+  "CD2_1",  "CD2_2",  "CROTA2", "LONPOLE", "LATPOLE", "PV2_1",  "PV1_3",  "PV1_4",
 };
 
 static TfHeader *
@@ -59,7 +61,8 @@ parse (const TfHeader *header, Wcs *wcs)
   int rejected = 0;
   g_autoptr (TfHeader) words = wcs_header (header);
   g_autofree char *cards = tf_header_dup_cards (words, &n_cards);
-  if (wcspih (cards, (int)n_cards, WCSHDR_all, 0, &rejected, &wcs->n, &wcs->list) != 0 || wcs->n < 1)
+  if (wcspih (cards, (int)n_cards, WCSHDR_all, 0, &rejected, &wcs->n, &wcs->list) != 0
+      || wcs->n < 1)
     return NULL;
   return wcsset (wcs->list) == 0 && wcs->list->naxis == 2 ? wcs->list : NULL;
 }
@@ -101,7 +104,8 @@ copy_wcs (const struct wcsprm *wcs, TfGeometry *g)
     }
 }
 
-/* Cylindrical maps are read with their rows along the Sun's parallels only: Paper II makes others oblique. */
+/* Cylindrical maps are read with their rows along the Sun's parallels only: Paper II makes
+ * others oblique. */
 static gboolean
 is_oblique (const TfGeometry *g)
 {
@@ -121,7 +125,8 @@ limb_share (const TfGeometry *g)
   for (int k = 0; k < 360; k++)
     {
       double u = x + r * cos (k * TF_DEG), v = y + r * sin (k * TF_DEG);
-      inside += u > 0.5 - 0.01 * r && u < g->width + 0.5 + 0.01 * r && v > 0.5 - 0.01 * r && v < g->height + 0.5 + 0.01 * r;
+      inside += u > 0.5 - 0.01 * r && u < g->width + 0.5 + 0.01 * r && v > 0.5 - 0.01 * r
+                && v < g->height + 0.5 + 0.01 * r;
     }
   return inside / 360.0;
 }
@@ -131,7 +136,8 @@ kind_of (const TfHeader *header, const TfGeometry *g)
 {
   if (!tf_geometry_is_map (g))
     return limb_share (g) >= 0.75 ? TF_KIND_DISK : TF_KIND_CUT_OUT;
-  return tf_header_has (header, "MODEL") || tf_header_has (header, "MODELDA") ? TF_KIND_MODEL_MAP : TF_KIND_MAP;
+  return tf_header_has (header, "MODEL") || tf_header_has (header, "MODELDA") ? TF_KIND_MODEL_MAP
+                                                                              : TF_KIND_MAP;
 }
 
 /* FOVX and FOVY (arcsec) belong to a picture of another size: CRPIX is then of that picture too. */
@@ -144,7 +150,8 @@ check_field_of_view (const TfHeader *header, TfFrameInfo *info)
   double told_x = fov_x / scale, told_y = fov_y / scale;
   gboolean differs = fabs (told_x / g->width - 1) > 0.02 || fabs (told_y / g->height - 1) > 0.02;
   if (differs && (g->crpix[0] > g->width || g->crpix[1] > g->height))
-    tf_notes_add (info->cautions, "header-of-another-size", "iidd", (int)g->width, (int)g->height, told_x, told_y);
+    tf_notes_add (info->cautions, "header-of-another-size", "iidd", (int)g->width, (int)g->height,
+                  told_x, told_y);
 }
 
 gboolean
@@ -170,8 +177,8 @@ tf_info_read_geometry (const TfHeader *header, TfFrameInfo *info)
   info->kind = kind_of (header, g);
   if (projection == TF_PROJECTION_TAN)
     {
-      if (!tf_header_has (header, "PC1_1") && !tf_header_has (header, "PC1_2") && !tf_header_has (header, "CD1_1")
-          && !tf_header_has (header, "CROTA2"))
+      if (!tf_header_has (header, "PC1_1") && !tf_header_has (header, "PC1_2")
+          && !tf_header_has (header, "CD1_1") && !tf_header_has (header, "CROTA2"))
         tf_notes_add (info->cautions, "north-taken-up", "");
       check_field_of_view (header, info);
     }

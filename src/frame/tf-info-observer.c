@@ -6,8 +6,9 @@
 
 #include <math.h>
 
-/* The observer's place: the header's where given, the Earth's by ephemeris only for what it leaves out. Then the rule of
- * radius and distance: an angular radius that disagrees with the distance by more than 0.1 % rules. */
+/* The observer's place: the header's where given, the Earth's by ephemeris only for what it
+ * leaves out. Then the rule of radius and distance: an angular radius that disagrees with the
+ * distance by more than 0.1 % rules. */
 
 #define DISAGREE 1e-3
 
@@ -26,11 +27,13 @@ within (const TfHeader *header, const char *keyword, double low, double high)
   return value >= low && value <= high ? value : NAN;
 }
 
-/* The distance that rules, m: @given unless the angular radius disagrees with it by more than 0.1 %. NaN without both. */
+/* The distance that rules, m: @given unless the angular radius disagrees with it by more than
+ * 0.1 %. NaN without both. */
 static double
 ruling_distance (const TfHeader *header, double given)
 {
-  double derived = tf_header_radius_m (header) / sin (within (header, "RSUN_OBS", 100, 40000) * TF_ARCSEC);
+  double derived
+      = tf_header_radius_m (header) / sin (within (header, "RSUN_OBS", 100, 40000) * TF_ARCSEC);
   return isnan (given) || fabs (derived / given - 1) > DISAGREE ? derived : given;
 }
 
@@ -46,7 +49,8 @@ tf_header_angular_radius (const TfHeader *header)
 static void
 complete_longitudes (TfObserver *o, TfTime time, const TfObserver *earth, TfNotes *cautions)
 {
-  double l0 = tf_observer_carrington (time, 0, isnan (o->distance_m) ? earth->distance_m : o->distance_m);
+  double l0
+      = tf_observer_carrington (time, 0, isnan (o->distance_m) ? earth->distance_m : o->distance_m);
   if (isnan (o->stonyhurst_lon_deg))
     o->stonyhurst_lon_deg = tf_wrap_180 (o->carrington_lon_deg - l0);
   else if (isnan (o->carrington_lon_deg))
@@ -69,7 +73,9 @@ complete_from_earth (TfObserver *o, const TfObserver *earth, guint given, TfFram
       o->carrington_lon_deg = earth->carrington_lon_deg;
       o->stonyhurst_lon_deg = earth->stonyhurst_lon_deg;
     }
-  o->source = given == 3 ? TF_OBSERVER_HEADER : given > 0 ? TF_OBSERVER_HEADER_EARTH : TF_OBSERVER_EARTH;
+  o->source = given == 3  ? TF_OBSERVER_HEADER
+              : given > 0 ? TF_OBSERVER_HEADER_EARTH
+                          : TF_OBSERVER_EARTH;
   if (!tf_time_is_known (info->time))
     return;
   if (given == 0)
@@ -82,13 +88,15 @@ complete_from_earth (TfObserver *o, const TfObserver *earth, guint given, TfFram
 static void
 settle_distance (const TfHeader *header, TfFrameInfo *info, TfObserver *o)
 {
-  double angle = within (header, "RSUN_OBS", 100, 40000), ruling = ruling_distance (header, o->distance_m);
+  double angle = within (header, "RSUN_OBS", 100, 40000),
+         ruling = ruling_distance (header, o->distance_m);
   if (isnan (angle) || isnan (ruling) || fabs (ruling / o->distance_m - 1) < 1e-15)
     return;
   if (isnan (o->distance_m))
     tf_notes_add (info->repairs, "distance-from-radius", "dd", angle, ruling / TF_AU_M);
   else
-    tf_notes_add (info->cautions, "distance-disagrees", "ddd", o->distance_m / TF_AU_M, angle, ruling / TF_AU_M);
+    tf_notes_add (info->cautions, "distance-disagrees", "ddd", o->distance_m / TF_AU_M, angle,
+                  ruling / TF_AU_M);
   o->distance_m = ruling;
 }
 

@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* Parts of tf_frame_info_read, each in a file of its own. They read a header that is already repaired. */
+/* Parts of tf_frame_info_read, each in a file of its own. They read a header that is already
+ * repaired. */
 
 #include "tf-frame-info.h"
 
@@ -13,7 +14,8 @@ void tf_info_read_role (const TfHeader *header, TfFrameInfo *info);
 void tf_info_read_time (const TfHeader *header, TfFrameInfo *info);
 /** tf_info_read_observer: observer, radius and distance into info->geometry; needs the time. */
 void tf_info_read_observer (const TfHeader *header, TfFrameInfo *info);
-/** tf_info_read_geometry: the rest of info->geometry by wcslib, and the kind. FALSE: there is none. */
+/** tf_info_read_geometry: the rest of info->geometry by wcslib, and the kind. FALSE: there is
+ * none. */
 gboolean tf_info_read_geometry (const TfHeader *header, TfFrameInfo *info);
 /** tf_info_read_instrument: (transfer full): origin of the frame. */
 char *tf_info_read_instrument (const TfHeader *header);
@@ -26,7 +28,8 @@ gboolean tf_header_is_map (const TfHeader *header);
 double tf_header_radius_m (const TfHeader *header);
 /** tf_header_time: the time the header gives, by the rule of tf_info_read_time, without notes. */
 TfTime tf_header_time (const TfHeader *header);
-/** tf_header_angular_radius: of the Sun, rad: RSUN_OBS, else from DSUN_OBS, else from the Earth at that time; NaN. */
+/** tf_header_angular_radius: of the Sun, rad: RSUN_OBS, else from DSUN_OBS, else from the Earth
+ * at that time; NaN. */
 double tf_header_angular_radius (const TfHeader *header);
 
 /* The dialects, by subject. */

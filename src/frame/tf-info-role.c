@@ -6,9 +6,9 @@
 #include <math.h>
 #include <string.h>
 
-/* What a header says its pixels are: a field, an intensity, or something that must be refused, with the reason. The words
- * that describe the content are asked one after the other; the first that says anything decides. Without any, the unit
- * decides. */
+/* What a header says its pixels are: a field, an intensity, or something that must be refused,
+ * with the reason. The words that describe the content are asked one after the other; the first
+ * that says anything decides. Without any, the unit decides. */
 
 typedef struct
 {
@@ -18,7 +18,8 @@ typedef struct
   const char *refusal; /* note code */
 } Rule;
 
-/* In this order: the more special first ("radial field" before "field", "azimuth of the field" before both). */
+/* In this order: the more special first ("radial field" before "field", "azimuth of the field"
+ * before both). */
 static const Rule rules[] = {
   { "AZIMUTH", TF_ROLE_REFUSED, TF_FIELD_UNKNOWN, "azimuth" },
   { " BAZI ", TF_ROLE_REFUSED, TF_FIELD_UNKNOWN, "azimuth" },
@@ -63,8 +64,8 @@ static const Rule rules[] = {
 
 /* Words that say what the pixels are, the plainest first. */
 static const char *const content_words[] = {
-  "BTYPE",    "CONTENT",  "IMTYPE",   "DATA-TYP", "IMGTYP01", "OBS_TYPE", "DPC_OBSR",
-  "OBS_MODE", "OBS-MODE", "MAPPARAM", "DATATYPE", "DETECTOR",
+  "BTYPE",    "CONTENT",  "IMTYPE",   "DATA-TYP", "IMGTYP01", "OBS_TYPE",
+  "DPC_OBSR", "OBS_MODE", "OBS-MODE", "MAPPARAM", "DATATYPE", "DETECTOR",
 };
 
 /* @text in upper case between blanks, brackets and underscores being blanks. */
@@ -101,12 +102,33 @@ tf_unit_to_gauss (const char *unit)
     const char *name;
     double factor;
   } units[] = {
-    { "g", 1 },           { "gauss", 1 },        { "gs", 1 },           { "kg", 1000 },        { "kgauss", 1000 },
-    { "kilogauss", 1000 }, { "mg", 1e-3 },       { "mgauss", 1e-3 },    { "milligauss", 1e-3 },
-    { "t", 1e4 },         { "tesla", 1e4 },      { "mt", 10 },          { "mtesla", 10 },      { "millitesla", 10 },
-    { "ut", 1e-2 },       { "microtesla", 1e-2 }, { "nt", 1e-5 },       { "nanotesla", 1e-5 },
-    { "mx/cm2", 1 },      { "mxcm-2", 1 },       { "maxwell/cm2", 1 },  { "maxwellcm-2", 1 },
-    { "wb/m2", 1e4 },     { "wbm-2", 1e4 },      { "1e-4t", 1 },        { "10-4t", 1 },        { "0.1mt", 1 },
+    { "g", 1 },
+    { "gauss", 1 },
+    { "gs", 1 },
+    { "kg", 1000 },
+    { "kgauss", 1000 },
+    { "kilogauss", 1000 },
+    { "mg", 1e-3 },
+    { "mgauss", 1e-3 },
+    { "milligauss", 1e-3 },
+    { "t", 1e4 },
+    { "tesla", 1e4 },
+    { "mt", 10 },
+    { "mtesla", 10 },
+    { "millitesla", 10 },
+    { "ut", 1e-2 },
+    { "microtesla", 1e-2 },
+    { "nt", 1e-5 },
+    { "nanotesla", 1e-5 },
+    { "mx/cm2", 1 },
+    { "mxcm-2", 1 },
+    { "maxwell/cm2", 1 },
+    { "maxwellcm-2", 1 },
+    { "wb/m2", 1e4 },
+    { "wbm-2", 1e4 },
+    { "1e-4t", 1 },
+    { "10-4t", 1 },
+    { "0.1mt", 1 },
   };
   if (unit == NULL)
     return 0;
@@ -138,10 +160,12 @@ unit_kind (const char *unit)
     return UNIT_MISSING;
   if (tf_unit_to_gauss (unit) > 0)
     return UNIT_FIELD;
-  if (g_str_has_prefix (lower, "dn") || g_str_has_prefix (lower, "count") || g_str_has_prefix (lower, "adu")
-      || strstr (lower, "intensity") != NULL || g_str_has_prefix (lower, "electron"))
+  if (g_str_has_prefix (lower, "dn") || g_str_has_prefix (lower, "count")
+      || g_str_has_prefix (lower, "adu") || strstr (lower, "intensity") != NULL
+      || g_str_has_prefix (lower, "electron"))
     return UNIT_INTENSITY;
-  if (strcmp (lower, "m/s") == 0 || strcmp (lower, "km/s") == 0 || strcmp (lower, "cm/s") == 0 || strcmp (lower, "m s-1") == 0)
+  if (strcmp (lower, "m/s") == 0 || strcmp (lower, "km/s") == 0 || strcmp (lower, "cm/s") == 0
+      || strcmp (lower, "m s-1") == 0)
     return UNIT_VELOCITY;
   if (g_str_has_prefix (lower, "deg") || g_str_has_prefix (lower, "rad"))
     return UNIT_ANGLE;
@@ -162,7 +186,8 @@ apply_rule (const TfHeader *header, const Rule *rule, const char *word, TfFrameI
   info->role = rule->role;
   info->field = rule->field;
   if (rule->role != TF_ROLE_FIELD)
-    refuse (info, rule->role, tf_note_new (rule->refusal, "ss", word, tf_header_get (header, word)));
+    refuse (info, rule->role,
+            tf_note_new (rule->refusal, "ss", word, tf_header_get (header, word)));
   else if (rule->refusal != NULL)
     tf_notes_add (info->cautions, rule->refusal, "ss", word, tf_header_get (header, word));
 }
@@ -215,7 +240,8 @@ tf_info_read_role (const TfHeader *header, TfFrameInfo *info)
   if (rule != NULL)
     apply_rule (header, rule, word, info);
   else if (is_h_alpha (header))
-    refuse (info, TF_ROLE_REFUSED, tf_note_new ("h-alpha", "ss", "WAVELNTH", tf_header_get (header, "WAVELNTH")));
+    refuse (info, TF_ROLE_REFUSED,
+            tf_note_new ("h-alpha", "ss", "WAVELNTH", tf_header_get (header, "WAVELNTH")));
   if (info->role == TF_ROLE_FIELD)
     apply_unit (info, rule != NULL);
   if (info->role == TF_ROLE_FIELD && info->field == TF_FIELD_UNKNOWN && !tf_header_is_map (header))
@@ -240,21 +266,26 @@ has_name (const char *text)
   return run >= 3;
 }
 
-/* TELESCOP; with INSTRUME or CAMERA unless it names both already ("SDO/HMI"); ORIGIN before it when it is only a size;
- * the model's name where there is no telescope. */
+/* TELESCOP; with INSTRUME or CAMERA unless it names both already ("SDO/HMI"); ORIGIN before it
+ * when it is only a size; the model's name where there is no telescope. */
 char *
 tf_info_read_instrument (const TfHeader *header)
 {
-  const char *telescope = tf_header_get (header, "TELESCOP"), *origin = word_text (header, "ORIGIN");
+  const char *telescope = tf_header_get (header, "TELESCOP"),
+             *origin = word_text (header, "ORIGIN");
   const char *instrument = word_text (header, "INSTRUME");
   const char *model = word_text (header, "MODEL"), *camera = word_text (header, "CAMERA");
   if (instrument == NULL && camera != NULL && strchr (camera, ' ') == NULL)
     instrument = camera;
   if (telescope == NULL || *telescope == '\0')
-    return g_strdup (instrument != NULL ? instrument : origin != NULL ? origin : model != NULL ? model : "unknown");
+    return g_strdup (instrument != NULL ? instrument
+                     : origin != NULL   ? origin
+                     : model != NULL    ? model
+                                        : "unknown");
   if (!has_name (telescope) && instrument == NULL && origin != NULL)
     return g_strdup_printf ("%s %s", origin, telescope);
-  if (strchr (telescope, '/') != NULL || instrument == NULL || strstr (telescope, instrument) != NULL)
+  if (strchr (telescope, '/') != NULL || instrument == NULL
+      || strstr (telescope, instrument) != NULL)
     return g_strdup (telescope);
   return g_strdup_printf ("%s %s", telescope, instrument);
 }

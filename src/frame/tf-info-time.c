@@ -6,8 +6,8 @@
 #include <math.h>
 #include <string.h>
 
-/* Time = middle of the exposure: DATE-AVG, else T_OBS, else DATE-OBS and half of the exposure, else DATE-OBS with "start or
- * middle unknown". */
+/* Time = middle of the exposure: DATE-AVG, else T_OBS, else DATE-OBS and half of the exposure,
+ * else DATE-OBS with "start or middle unknown". */
 
 static TfTime
 read_word (const TfHeader *header, const char *word)
@@ -20,7 +20,8 @@ read_word (const TfHeader *header, const char *word)
 static double
 read_span (const TfHeader *header, const char **word)
 {
-  static const char *const words[] = { "TELAPSE", "INTERVAL", "TIMESPAN", "XPOSURE", "EXPTIME", "EXPOSURE" };
+  static const char *const words[]
+      = { "TELAPSE", "INTERVAL", "TIMESPAN", "XPOSURE", "EXPTIME", "EXPOSURE" };
   TfTime start = read_word (header, "DATE-OBS"), end = read_word (header, "DATE-END");
   if (end.s > start.s && end.s - start.s < 86400)
     {
@@ -39,7 +40,8 @@ read_span (const TfHeader *header, const char **word)
   return NAN;
 }
 
-/* The whole rule: time, the word it came from, and the word and length of the exposure of which half was added. */
+/* The whole rule: time, the word it came from, and the word and length of the exposure of which
+ * half was added. */
 static TfTime
 find_time (const TfHeader *header, const char **source, const char **span_word, double *span)
 {
@@ -83,5 +85,6 @@ tf_info_read_time (const TfHeader *header, TfFrameInfo *info)
   else if (word != NULL)
     tf_notes_add (info->repairs, "half-exposure", "ds", info->time_span_s / 2, word);
   else if (strcmp (source, "DATE-OBS") == 0 && !tf_header_is_map (header))
-    tf_notes_add (info->cautions, strlen (text) == 10 ? "time-of-day-unknown" : "start-or-middle", "s", text);
+    tf_notes_add (info->cautions, strlen (text) == 10 ? "time-of-day-unknown" : "start-or-middle",
+                  "s", text);
 }

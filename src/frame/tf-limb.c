@@ -7,9 +7,10 @@
 #include "tf-constants.h"
 #include "tf-witness.h"
 
-/* The limb as the circle where pixels with a value end. Along each of RAYS rays from the centre the outermost such place is
- * found; a circle is fitted to all of them, those far off left out, and the rays are cast again from its centre. Where the
- * sky is filled too, the place is where the scatter of the values changes, sector by sector. */
+/* The limb as the circle where pixels with a value end. Along each of RAYS rays from the centre
+ * the outermost such place is found; a circle is fitted to all of them, those far off left out,
+ * and the rays are cast again from its centre. Where the sky is filled too, the place is where
+ * the scatter of the values changes, sector by sector. */
 
 enum
 {
@@ -39,7 +40,8 @@ look (const Picture *p, double x, double y)
   return isfinite (p->pixels[(gssize)row * p->width + column]) ? 1 : 0;
 }
 
-/* Outermost end of the values on one ray, at least two pixels within the picture; NaN when there is none. */
+/* Outermost end of the values on one ray, at least two pixels within the picture; NaN when
+ * there is none. */
 static double
 ray_edge (const Picture *p, double cx, double cy, double angle, double radius)
 {
@@ -124,7 +126,8 @@ sector_edge (const Moments *m, guint bins, double radius)
       n += m[k].n;
       sum += m[k].sum;
       squares += m[k].squares;
-      double l = log_likelihood (n, sum, squares) + log_likelihood (all.n - n, all.sum - sum, all.squares - squares);
+      double l = log_likelihood (n, sum, squares)
+                 + log_likelihood (all.n - n, all.sum - sum, all.squares - squares);
       if (k >= 3 && l > best)
         {
           best = l;
@@ -142,7 +145,8 @@ scan_sectors (const Picture *p, double cx, double cy, double radius, Point *poin
   gather (p, cx, cy, radius, bins, moments);
   for (guint k = 0; k < SECTORS; k++)
     {
-      double angle = (k + 0.5) * 2 * TF_PI / SECTORS, r = sector_edge (moments + (gsize)k * bins, bins, radius);
+      double angle = (k + 0.5) * 2 * TF_PI / SECTORS,
+             r = sector_edge (moments + (gsize)k * bins, bins, radius);
       if (!isnan (r))
         points[n++] = (Point){ cx + r * cos (angle), cy + r * sin (angle) };
     }
@@ -165,7 +169,8 @@ median (double *values, guint n)
   return n % 2 == 1 ? values[n / 2] : 0.5 * (values[n / 2 - 1] + values[n / 2]);
 }
 
-/* One Gauss-Newton step of geometric least squares over points nearer to the circle than @reach. FALSE: singular. */
+/* One Gauss-Newton step of geometric least squares over points nearer to the circle than
+ * @reach. FALSE: singular. */
 static gboolean
 improve (const Point *points, guint n, double reach, TfLimbFit *fit)
 {
@@ -208,7 +213,8 @@ fit_circle (const Point *points, guint n, TfLimbFit *fit)
       if (!improve (points, n, reach, fit))
         return FALSE;
       for (guint k = 0; k < n; k++)
-        off[k] = fabs (hypot (points[k].x - fit->centre_x, points[k].y - fit->centre_y) - fit->radius_px);
+        off[k] = fabs (hypot (points[k].x - fit->centre_x, points[k].y - fit->centre_y)
+                       - fit->radius_px);
       fit->sigma_px = 1.4826 * median (off, n);
       reach = MAX (3 * fit->sigma_px, 0.5);
     }
@@ -218,12 +224,13 @@ fit_circle (const Point *points, guint n, TfLimbFit *fit)
 TfLimbFit
 tf_limb_fit (const float *pixels, const TfGeometry *geometry)
 {
-  TfLimbFit fit = { .centre_x = NAN, .centre_y = NAN, .radius_px = NAN, .sigma_px = NAN }, none = fit;
+  TfLimbFit fit = { .centre_x = NAN, .centre_y = NAN, .radius_px = NAN, .sigma_px = NAN },
+            none = fit;
   Picture picture = { pixels, (int)geometry->width, (int)geometry->height };
   Point points[RAYS];
   double cx, cy, radius = tf_geometry_disk_radius (geometry);
-  if (geometry->projection != TF_PROJECTION_TAN || !tf_geometry_disk_centre (geometry, &cx, &cy) || !(radius > 4)
-      || !(radius < 1e6))
+  if (geometry->projection != TF_PROJECTION_TAN || !tf_geometry_disk_centre (geometry, &cx, &cy)
+      || !(radius > 4) || !(radius < 1e6))
     return none;
   fit.centre_x = cx;
   fit.centre_y = cy;
@@ -238,7 +245,8 @@ tf_limb_fit (const float *pixels, const TfGeometry *geometry)
           fit.n_points = scan_sectors (&picture, fit.centre_x, fit.centre_y, fit.radius_px, points);
         }
       if (fit.n_points * per_point < FEWEST || !fit_circle (points, fit.n_points, &fit)
-          || !(fit.radius_px > 0.4 * radius && fit.radius_px < 2.5 * radius) || fit.sigma_px > 0.03 * radius)
+          || !(fit.radius_px > 0.4 * radius && fit.radius_px < 2.5 * radius)
+          || fit.sigma_px > 0.03 * radius)
         return none;
     }
   fit.found = TRUE;
@@ -254,7 +262,8 @@ tf_limb_judge (const TfLimbFit *fit, const TfGeometry *geometry, TfNotes *cautio
   double shift = hypot (fit->centre_x - cx, fit->centre_y - cy), growth = fit->radius_px - radius;
   double off = MAX (shift, fabs (growth)), limit = MAX (0.002 * radius, 0.5);
   if (off > MAX (0.01 * radius, 2 * limit))
-    tf_notes_add (cautions, "header-lies", "dddddd", fit->centre_x, fit->centre_y, fit->radius_px, cx, cy, radius);
+    tf_notes_add (cautions, "header-lies", "dddddd", fit->centre_x, fit->centre_y, fit->radius_px,
+                  cx, cy, radius);
   else if (off > limit)
     tf_notes_add (cautions, "limb-off", "dd", shift, growth);
 }

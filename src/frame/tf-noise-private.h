@@ -3,7 +3,8 @@
  */
 #pragma once
 
-/* Noise of a frame from its own pixels: 1.4826 MAD of the weak pixels by rings of mu (by latitude on maps). */
+/* Noise of a frame from its own pixels: 1.4826 MAD of the weak pixels by rings of mu (by
+ * latitude on maps). */
 
 #include "tf-frame.h"
 
@@ -19,7 +20,8 @@ typedef struct
   double correlation;
 } TfNoise;
 
-/** tf_noise_measure: n is 0 when too few pixels have a value. Deterministic; a picture without noise gives 0. */
+/** tf_noise_measure: n is 0 when too few pixels have a value. Deterministic; a picture without
+ * noise gives 0. */
 void tf_noise_measure (const float *pixels, const TfGeometry *geometry, TfNoise *noise);
 /** tf_noise_at: linear between rings, held at the ends; NaN without rings. */
 double tf_noise_at (const TfNoise *noise, double mu);

@@ -6,18 +6,19 @@
 #include <math.h>
 #include <string.h>
 
-/* A ring's sigma is the fixed point of "the median distance from the median of the pixels within CLIP sigma": reached
- * from below, so that the many pixels of an active disk that are not noise never enter. CORE is that median for a
- * normal distribution cut at CLIP: 2 Phi (CORE) - 1 = (2 Phi (CLIP) - 1) / 2. */
+/* A ring's sigma is the fixed point of "the median distance from the median of the pixels
+ * within CLIP sigma": reached from below, so that the many pixels of an active disk that are
+ * not noise never enter. CORE is that median for a normal distribution cut at CLIP: 2 Phi
+ * (CORE) - 1 = (2 Phi (CLIP) - 1) / 2. */
 #define CLIP 2.5
 #define CORE 0.66475116
 
 enum
 {
-  WANTED = 300000, /* pixels looked at for sigma */
+  WANTED = 300000,   /* pixels looked at for sigma */
   LOOKED_AT = 50000, /* and for the correlation */
-  FEWEST = 60,     /* pixels that make a ring */
-  REACH = 4,       /* longest lag of the autocorrelation, pixels */
+  FEWEST = 60,       /* pixels that make a ring */
+  REACH = 4,         /* longest lag of the autocorrelation, pixels */
   TURNS = 60,
 };
 
@@ -84,10 +85,12 @@ lower_bound (const float *sorted, gsize n, double limit)
 static double
 median_of (const float *sorted, gsize n)
 {
-  return n % 2 == 1 ? (double)sorted[n / 2] : 0.5 * ((double)sorted[n / 2 - 1] + (double)sorted[n / 2]);
+  return n % 2 == 1 ? (double)sorted[n / 2]
+                    : 0.5 * ((double)sorted[n / 2 - 1] + (double)sorted[n / 2]);
 }
 
-/* The @share quantile of |value - centre| of a sorted array: how far must one reach to hold that many? */
+/* The @share quantile of |value - centre| of a sorted array: how far must one reach to hold
+ * that many? */
 static double
 reach_of (const float *sorted, gsize n, double centre, double share)
 {
@@ -95,7 +98,8 @@ reach_of (const float *sorted, gsize n, double centre, double share)
   for (guint k = 0; k < 48 && high - low > 1e-7 * high; k++)
     {
       double d = 0.5 * (low + high);
-      gsize held = lower_bound (sorted, n, nextafter (centre + d, INFINITY)) - lower_bound (sorted, n, centre - d);
+      gsize held = lower_bound (sorted, n, nextafter (centre + d, INFINITY))
+                   - lower_bound (sorted, n, centre - d);
       if ((double)held < share * (double)n)
         low = d;
       else
@@ -104,15 +108,18 @@ reach_of (const float *sorted, gsize n, double centre, double share)
   return high;
 }
 
-/* Values stored in whole steps stand in runs, and a median of them moves by whole steps. Each run is spread evenly over the
- * half gaps on its sides; values that stand alone are left alone. A run that holds most of the sample is no noise cut into
- * steps, but a picture without noise: nothing is spread then. Returns the step about the median, 0 where there is none. */
+/* Values stored in whole steps stand in runs, and a median of them moves by whole steps. Each
+ * run is spread evenly over the half gaps on its sides; values that stand alone are left alone.
+ * A run that holds most of the sample is no noise cut into steps, but a picture without noise:
+ * nothing is spread then. Returns the step about the median, 0 where there is none. */
 static double
 spread_steps (float *sorted, gsize n)
 {
   double step = 0, left = 0;
   float middle = sorted[n / 2];
-  if (lower_bound (sorted, n, nextafter ((double)middle, INFINITY)) - lower_bound (sorted, n, (double)middle) > n * 6 / 10)
+  if (lower_bound (sorted, n, nextafter ((double)middle, INFINITY))
+          - lower_bound (sorted, n, (double)middle)
+      > n * 6 / 10)
     return 0;
   for (gsize a = 0, b; a < n; a = b)
     {
@@ -124,7 +131,8 @@ spread_steps (float *sorted, gsize n)
       if (b - a > 1 && a <= n / 2 && n / 2 < b)
         step = first + right;
       for (gsize k = a; b - a > 1 && k < b; k++)
-        sorted[k] = (float)(value - first + (first + right) * ((double)(k - a) + 0.5) / (double)(b - a));
+        sorted[k]
+            = (float)(value - first + (first + right) * ((double)(k - a) + 0.5) / (double)(b - a));
       left = right;
     }
   return step;
@@ -170,7 +178,8 @@ rings_add (Rings *rings, double place, double share, float value)
   rings->sum[k] += place;
 }
 
-/* Every @step-th pixel of every @step-th row, each row begun one further so that no column is favoured. */
+/* Every @step-th pixel of every @step-th row, each row begun one further so that no column is
+ * favoured. */
 static void
 rings_fill (Rings *rings, const float *pixels, const TfGeometry *g, guint step)
 {
@@ -219,7 +228,8 @@ tf_noise_at (const TfNoise *noise, double mu)
     return r[0].gauss;
   for (guint k = 1; k < noise->n; k++)
     if (mu <= r[k].mu)
-      return r[k - 1].gauss + (r[k].gauss - r[k - 1].gauss) * (mu - r[k - 1].mu) / (r[k].mu - r[k - 1].mu);
+      return r[k - 1].gauss
+             + (r[k].gauss - r[k - 1].gauss) * (mu - r[k - 1].mu) / (r[k].mu - r[k - 1].mu);
   return r[noise->n - 1].gauss;
 }
 
@@ -227,14 +237,16 @@ tf_noise_at (const TfNoise *noise, double mu)
 
 /* One row in units of its sigma; what is not weak is NaN. */
 static void
-weak_row (const float *pixels, const TfGeometry *g, const TfNoise *noise, guint y, float *mu, float *out)
+weak_row (const float *pixels, const TfGeometry *g, const TfNoise *noise, guint y, float *mu,
+          float *out)
 {
   const float *line = pixels + (gsize)y * g->width;
   double sigma = noise->rings[noise->n - 1].gauss;
   TfPlace place;
   if (tf_geometry_is_map (g))
-    sigma = tf_geometry_pixel_to_sun (g, 0.5 * (g->width + 1), y + 1.0, &place) ? tf_noise_at (noise, fabs (place.lat_deg))
-                                                                               : NAN;
+    sigma = tf_geometry_pixel_to_sun (g, 0.5 * (g->width + 1), y + 1.0, &place)
+                ? tf_noise_at (noise, fabs (place.lat_deg))
+                : NAN;
   if (g->projection == TF_PROJECTION_TAN)
     tf_geometry_row_mu (g, y + 1.0, 1, g->width, mu);
   for (guint x = 0; x < g->width; x++)
@@ -247,7 +259,8 @@ weak_row (const float *pixels, const TfGeometry *g, const TfNoise *noise, guint 
 
 typedef struct
 {
-  double product[REACH + 1][2 * REACH + 1], squares[REACH + 1][2 * REACH + 1], n[REACH + 1][2 * REACH + 1];
+  double product[REACH + 1][2 * REACH + 1], squares[REACH + 1][2 * REACH + 1],
+      n[REACH + 1][2 * REACH + 1];
 } Lags;
 
 static void
@@ -272,8 +285,9 @@ is_far (guint dy, guint k)
   return dy == REACH || k == 0 || k == 2 * REACH;
 }
 
-/* 1 + 2 sum of rho over half the lags. What is still there at the longest lags is the Sun's own structure, not noise: it is
- * taken off first. Only what stands above three times its own error counts. */
+/* 1 + 2 sum of rho over half the lags. What is still there at the longest lags is the Sun's own
+ * structure, not noise: it is taken off first. Only what stands above three times its own error
+ * counts. */
 static double
 lags_factor (const Lags *lags)
 {

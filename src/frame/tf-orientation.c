@@ -7,10 +7,11 @@
 #include "tf-rotation.h"
 #include "tf-witness.h"
 
-/* Four readings of the same pixels: as given, turned by 180 deg, east and west exchanged, north and south exchanged. Under
- * each, the field of the earlier frame is carried by the Sun's rotation to the time of the later one and correlated with it
- * on a grid of one degree. Right or north-south exchanged, features move west; turned or east-west exchanged, east. The two
- * of a pair differ by the curvature of the paths alone, which needs |B0| > 3 deg. */
+/* Four readings of the same pixels: as given, turned by 180 deg, east and west exchanged, north
+ * and south exchanged. Under each, the field of the earlier frame is carried by the Sun's
+ * rotation to the time of the later one and correlated with it on a grid of one degree. Right
+ * or north-south exchanged, features move west; turned or east-west exchanged, east. The two of
+ * a pair differ by the curvature of the paths alone, which needs |B0| > 3 deg. */
 
 enum
 {
@@ -19,9 +20,9 @@ enum
   LAT_REACH = 50,
 };
 
-#define CLEAR 0.10   /* a reading must win by this much in correlation */
-#define SHAPE 0.03   /* and within its pair by this much */
-#define LEAST 0.25   /* correlation that is a match at all */
+#define CLEAR     0.10 /* a reading must win by this much in correlation */
+#define SHAPE     0.03 /* and within its pair by this much */
+#define LEAST     0.25 /* correlation that is a match at all */
 #define CAP_GAUSS 300.0
 
 /* The value at a place under a reading; NaN off the disk or without a value. */
@@ -65,7 +66,8 @@ correlate (const TfFrame *earlier, const TfFrame *later, int reading)
   const TfGeometry *g = tf_frame_get_geometry (earlier), *h = tf_frame_get_geometry (later);
   guint level_a = level_of_a_degree (earlier), level_b = level_of_a_degree (later), n = 0;
   double seconds = tf_frame_get_info (later)->time.s - tf_frame_get_info (earlier)->time.s;
-  double centre = tf_geometry_central_carrington (g), later_centre = tf_geometry_central_carrington (h);
+  double centre = tf_geometry_central_carrington (g),
+         later_centre = tf_geometry_central_carrington (h);
   double ab = 0, aa = 0, bb = 0;
   for (int lat = -LAT_REACH; lat <= LAT_REACH; lat++)
     for (int cmd = -LON_REACH; cmd <= LON_REACH; cmd++)
@@ -73,7 +75,8 @@ correlate (const TfFrame *earlier, const TfFrame *later, int reading)
         double lon = centre + cmd, moved = lon + tf_rotation_carry (0, lat, seconds);
         if (fabs (tf_wrap_180 (moved - later_centre)) > LON_REACH)
           continue;
-        double a = value_at (earlier, reading, level_a, lon, lat), b = value_at (later, reading, level_b, moved, lat);
+        double a = value_at (earlier, reading, level_a, lon, lat),
+               b = value_at (later, reading, level_b, moved, lat);
         if (isnan (a) || isnan (b))
           continue;
         ab += a * b;
@@ -117,7 +120,8 @@ decide (const double score[READINGS], double b0, TfNote **reason)
 }
 
 TfOrientation
-tf_orientation_witness (const TfFrame *earlier, const TfFrame *later, double score[4], TfNote **reason)
+tf_orientation_witness (const TfFrame *earlier, const TfFrame *later, double score[4],
+                        TfNote **reason)
 {
   double own_score[READINGS] = { NAN, NAN, NAN, NAN };
   g_autoptr (TfNote) why = why_not (earlier, later);

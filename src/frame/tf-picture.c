@@ -7,9 +7,10 @@
 
 #include "tf-constants.h"
 
-/* A row of the view becomes places in a pyramid level, places become field values, values become colours through a table.
- * Places are counted from 0, integers at the centres of the level's pixels. DISK is affine; UNROLLED and CLOSE are worked
- * out on a grid of STEP view pixels and interpolated, exactly only in cells that the limb, a map's seam or the view's end
+/* A row of the view becomes places in a pyramid level, places become field values, values
+ * become colours through a table. Places are counted from 0, integers at the centres of the
+ * level's pixels. DISK is affine; UNROLLED and CLOSE are worked out on a grid of STEP view
+ * pixels and interpolated, exactly only in cells that the limb, a map's seam or the view's end
  * of the Sun goes through. */
 
 enum
@@ -24,8 +25,8 @@ typedef struct
   const TfGeometry *geometry;
   const float *data; /* the level */
   guint width, height;
-  double shrink;     /* frame pixels a level pixel: 2^level */
-  float sky[3];      /* centre and squared reach of the disk in the level; what has no value beyond it needs no look */
+  double shrink; /* frame pixels a level pixel: 2^level */
+  float sky[3];  /* centre and squared reach of the disk in the level: no look beyond */
   gboolean nearest;
   guint columns, rows; /* of the view */
   double scale;        /* colours a gauss */
@@ -56,14 +57,16 @@ fill_colours (Render *render, const TfPaint *paint)
   for (guint k = 0; k <= COLOURS; k++)
     {
       double t = 2.0 * k / COLOURS - 1; /* -1 to 1 */
-      render->colours[k] = paint->palette == TF_PALETTE_GREY ? mix (0xff000000u, 0xffffffffu, 0.5 * (t + 1))
-                                                             : mix (zero, t < 0 ? 0xff4b5fd6u : 0xffd98a00u, fabs (t));
+      render->colours[k] = paint->palette == TF_PALETTE_GREY
+                               ? mix (0xff000000u, 0xffffffffu, 0.5 * (t + 1))
+                               : mix (zero, t < 0 ? 0xff4b5fd6u : 0xffd98a00u, fabs (t));
     }
 }
 
 /* -- sampling -------------------------------------------------------------------------------- */
 
-/* The four pixels about (u, v), those with a value alone, weighted; NaN when they have less than half of the weight. */
+/* The four pixels about (u, v), those with a value alone, weighted; NaN when they have less
+ * than half of the weight. */
 static float
 edge_value (const Render *r, float u, float v)
 {
@@ -89,7 +92,8 @@ edge_value (const Render *r, float u, float v)
 
 /* Bilinear without branches, so that it vectorises: NaN when one of the four is, or outside. */
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-sample_bilinear (const float *data, int width, int height, const float *u, const float *v, guint n, float *out)
+sample_bilinear (const float *data, int width, int height, const float *u, const float *v, guint n,
+                 float *out)
 {
   float right = (float)(width - 1), top = (float)(height - 1);
   for (guint k = 0; k < n; k++)
@@ -105,7 +109,8 @@ sample_bilinear (const float *data, int width, int height, const float *u, const
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-sample_nearest (const float *data, int width, int height, const float *u, const float *v, guint n, float *out)
+sample_nearest (const float *data, int width, int height, const float *u, const float *v, guint n,
+                float *out)
 {
   float right = (float)width - 0.5f, top = (float)height - 0.5f;
   for (guint k = 0; k < n; k++)
@@ -129,7 +134,8 @@ has_hole (const float *values, guint n)
 
 /* Fills what the quick way left open from @first on. */
 static void
-fill_holes (const Render *r, guint first, guint n, gboolean all, const float *u, const float *v, float *out)
+fill_holes (const Render *r, guint first, guint n, gboolean all, const float *u, const float *v,
+            float *out)
 {
   for (guint k = first; k < first + n; k++)
     {
@@ -142,7 +148,10 @@ fill_holes (const Render *r, guint first, guint n, gboolean all, const float *u,
 static void
 sample_row (const Render *r, const float *u, const float *v, float *out)
 {
-  enum { PIECE = 32 };
+  enum
+  {
+    PIECE = 32
+  };
   gboolean small = r->width < 2 || r->height < 2;
   if (r->nearest)
     {
@@ -160,7 +169,8 @@ sample_row (const Render *r, const float *u, const float *v, float *out)
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-colour_row (const float *values, guint n, float scale, const guint32 *colours, guint32 ground, guint32 *out)
+colour_row (const float *values, guint n, float scale, const guint32 *colours, guint32 ground,
+            guint32 *out)
 {
   for (guint k = 0; k < n; k++)
     {
@@ -205,7 +215,8 @@ disk_places (const Render *r, guint row, float *u, float *v)
     }
 }
 
-/* The grid's nodes of a band of rows: node (i, j) is view point (i STEP + 0.5, first + j STEP + 0.5). */
+/* The grid's nodes of a band of rows: node (i, j) is view point (i STEP + 0.5, first + j STEP +
+ * 0.5). */
 typedef struct
 {
   float *u, *v;
@@ -221,10 +232,12 @@ fill_grid (const Render *r, guint first, guint n, Grid *grid)
   grid->v = g_new (float, (gsize)down * grid->across);
   for (guint j = 0; j < down; j++)
     for (guint i = 0; i < grid->across; i++)
-      exact_place (r, i * STEP + 0.5, first + j * STEP + 0.5, &grid->u[j * grid->across + i], &grid->v[j * grid->across + i]);
+      exact_place (r, i * STEP + 0.5, first + j * STEP + 0.5, &grid->u[j * grid->across + i],
+                   &grid->v[j * grid->across + i]);
 }
 
-/* TRUE when the cell whose first node is @at is smooth: all four nodes on the Sun and no seam between them. */
+/* TRUE when the cell whose first node is @at is smooth: all four nodes on the Sun and no seam
+ * between them. */
 static gboolean
 is_smooth (const Render *r, const Grid *grid, guint at)
 {
@@ -252,8 +265,10 @@ cell_places (const Grid *grid, guint at, guint down, guint n, float *u, float *v
 {
   const float *gu = grid->u + at, *gv = grid->v + at;
   float t = (float)down / STEP;
-  float u0 = gu[0] + t * (gu[grid->across] - gu[0]), u1 = gu[1] + t * (gu[grid->across + 1] - gu[1]);
-  float v0 = gv[0] + t * (gv[grid->across] - gv[0]), v1 = gv[1] + t * (gv[grid->across + 1] - gv[1]);
+  float u0 = gu[0] + t * (gu[grid->across] - gu[0]),
+        u1 = gu[1] + t * (gu[grid->across + 1] - gu[1]);
+  float v0 = gv[0] + t * (gv[grid->across] - gv[0]),
+        v1 = gv[1] + t * (gv[grid->across + 1] - gv[1]);
   for (guint k = 0; k < n; k++)
     {
       u[k] = u0 + (u1 - u0) * (float)k / STEP;
@@ -298,7 +313,8 @@ render_band (guint band, guint first, guint n, guint worker, gpointer data)
       else
         grid_places (r, &grid, first, row, u, v);
       sample_row (r, u, v, values);
-      colour_row (values, r->columns, (float)r->scale, r->colours, r->ground, r->out + (gsize)row * r->stride);
+      colour_row (values, r->columns, (float)r->scale, r->colours, r->ground,
+                  r->out + (gsize)row * r->stride);
     }
   g_free (grid.u);
   g_free (grid.v);
@@ -325,7 +341,8 @@ coarseness (const TfView *view, const TfGeometry *g)
   double x[3], y[3], mx = view->width / 2, my = view->height / 2;
   if (view->look == TF_LOOK_DISK)
     return 1 / view->zoom;
-  if (tf_view_to_pixel (view, g, mx, my, &x[0], &y[0]) && tf_view_to_pixel (view, g, mx + 1, my, &x[1], &y[1])
+  if (tf_view_to_pixel (view, g, mx, my, &x[0], &y[0])
+      && tf_view_to_pixel (view, g, mx + 1, my, &x[1], &y[1])
       && tf_view_to_pixel (view, g, mx, my + 1, &x[2], &y[2]))
     {
       double area = fabs ((x[1] - x[0]) * (y[2] - y[0]) - (x[2] - x[0]) * (y[1] - y[0]));
@@ -343,7 +360,8 @@ choose_level (const TfFrame *frame, Render *r)
   guint level = 0;
   r->data = tf_frame_get_level (frame, 0, &r->width, &r->height);
   r->nearest = coarse < 0.5;
-  for (r->shrink = 1; r->shrink * 1.42 < coarse; r->shrink *= 2) /* drawn at 0.7 to 1.4 of the level's own size */
+  for (r->shrink = 1; r->shrink * 1.42 < coarse;
+       r->shrink *= 2) /* drawn at 0.7 to 1.4 of the level's own size */
     {
       const float *next = tf_frame_get_level (frame, level + 1, NULL, NULL);
       if (next == NULL)
@@ -353,11 +371,14 @@ choose_level (const TfFrame *frame, Render *r)
 }
 
 gboolean
-tf_picture_render (const TfFrame *frame, const TfView *view, const TfPaint *paint, guint32 *out, guint stride,
-                   const TfWork *work)
+tf_picture_render (const TfFrame *frame, const TfView *view, const TfPaint *paint, guint32 *out,
+                   guint stride, const TfWork *work)
 {
   g_return_val_if_fail (frame != NULL && view != NULL && paint != NULL && out != NULL, FALSE);
-  Render render = { .view = view, .geometry = tf_frame_get_geometry (frame), .ground = paint->ground, .out = out,
+  Render render = { .view = view,
+                    .geometry = tf_frame_get_geometry (frame),
+                    .ground = paint->ground,
+                    .out = out,
                     .stride = stride };
   if (!(view->zoom > 0) || !(paint->range_gauss > 0) || !(view->width >= 0.5 && view->width < 65536)
       || !(view->height >= 0.5 && view->height < 65536))

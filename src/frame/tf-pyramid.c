@@ -10,7 +10,8 @@ enum
   SMALLEST = 64
 };
 
-/* One step: every box of 2 x 2 of the level below, weighted by how many frame pixels stand in each. */
+/* One step: every box of 2 x 2 of the level below, weighted by how many frame pixels stand in
+ * each. */
 typedef struct
 {
   const float *below, *below_weight; /* below_weight NULL: 1 everywhere */
@@ -19,16 +20,19 @@ typedef struct
   guint width;
 } Step;
 
-/* Full boxes of two rows, without a branch, so that it vectorises. A value that is not finite has no weight. */
+/* Full boxes of two rows, without a branch, so that it vectorises. A value that is not finite
+ * has no weight. */
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-first_boxes (const float *restrict a, const float *restrict b, guint n, float *restrict mean, float *restrict weight)
+first_boxes (const float *restrict a, const float *restrict b, guint n, float *restrict mean,
+             float *restrict weight)
 {
   for (guint x = 0; x < n; x++)
     {
       float p = a[2 * x], q = a[2 * x + 1], r = b[2 * x], s = b[2 * x + 1];
       float wp = p - p <= 0 ? 1.0f : 0.0f, wq = q - q <= 0 ? 1.0f : 0.0f;
       float wr = r - r <= 0 ? 1.0f : 0.0f, ws = s - s <= 0 ? 1.0f : 0.0f;
-      float sum = (wp > 0 ? p : 0.0f) + (wq > 0 ? q : 0.0f) + (wr > 0 ? r : 0.0f) + (ws > 0 ? s : 0.0f);
+      float sum
+          = (wp > 0 ? p : 0.0f) + (wq > 0 ? q : 0.0f) + (wr > 0 ? r : 0.0f) + (ws > 0 ? s : 0.0f);
       float count = wp + wq + wr + ws;
       weight[x] = count;
       mean[x] = count > 0 ? sum / count : NAN;
@@ -36,8 +40,8 @@ first_boxes (const float *restrict a, const float *restrict b, guint n, float *r
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-further_boxes (const float *restrict a, const float *restrict b, const float *restrict wa, const float *restrict wb, guint n,
-               float *restrict mean, float *restrict weight)
+further_boxes (const float *restrict a, const float *restrict b, const float *restrict wa,
+               const float *restrict wb, guint n, float *restrict mean, float *restrict weight)
 {
   for (guint x = 0; x < n; x++)
     {
@@ -84,15 +88,16 @@ step_rows (guint band, guint first, guint n, guint worker, gpointer data)
       if (done > 0 && w == NULL)
         first_boxes (a, a + step->below_width, done, step->mean + at, step->weight + at);
       else if (done > 0)
-        further_boxes (a, a + step->below_width, w + below, w + below + step->below_width, done, step->mean + at,
-                       step->weight + at);
+        further_boxes (a, a + step->below_width, w + below, w + below + step->below_width, done,
+                       step->mean + at, step->weight + at);
       for (guint x = done; x < step->width; x++)
         edge_box (step, x, y);
     }
 }
 
 guint
-tf_pyramid_make (const float *pixels, guint width, guint height, const TfWork *work, TfLevel *levels)
+tf_pyramid_make (const float *pixels, guint width, guint height, const TfWork *work,
+                 TfLevel *levels)
 {
   TfPool *pool = work != NULL ? work->pool : NULL;
   TfWork whole = { .pool = pool, .workers = work != NULL ? work->workers : NULL };
@@ -102,7 +107,8 @@ tf_pyramid_make (const float *pixels, guint width, guint height, const TfWork *w
   while (MAX (step.below_width, step.below_height) > SMALLEST && n < TF_MAX_LEVELS)
     {
       guint w = (step.below_width + 1) / 2, h = (step.below_height + 1) / 2;
-      TfPixels *mean = tf_pixels_new (pool, (gsize)w * h), *weight = tf_pixels_new (pool, (gsize)w * h);
+      TfPixels *mean = tf_pixels_new (pool, (gsize)w * h),
+               *weight = tf_pixels_new (pool, (gsize)w * h);
       if (mean == NULL || weight == NULL)
         {
           tf_pixels_unref (mean);

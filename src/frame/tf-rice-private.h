@@ -13,4 +13,5 @@
  * @out: @n integers
  * Returns: FALSE when the bytes end before the pixels do.
  */
-gboolean tf_rice_decode (const guint8 *bytes, gsize n_bytes, guint pixel_bytes, guint block, guint n, gint32 *out);
+gboolean tf_rice_decode (const guint8 *bytes, gsize n_bytes, guint pixel_bytes, guint block,
+                         guint n, gint32 *out);

@@ -61,22 +61,28 @@ tf_rice_look (TfFits *fits)
     {
       char keyword[12];
       g_snprintf (keyword, sizeof keyword, "ZTILE%d", k + 1);
-      r->tile[k] = CLAMP (read_long (fits->file, keyword, k == 0 ? (long)fits->axes[0] : 1), 1, (long)fits->axes[k]);
+      r->tile[k] = CLAMP (read_long (fits->file, keyword, k == 0 ? (long)fits->axes[0] : 1), 1,
+                          (long)fits->axes[k]);
       rows &= r->tile[k] == (k == 0 ? (long)fits->axes[0] : 1);
     }
-  double scale = tf_header_number (fits->header, "BSCALE"), zero = tf_header_number (fits->header, "BZERO");
+  double scale = tf_header_number (fits->header, "BSCALE"),
+         zero = tf_header_number (fits->header, "BZERO");
   r->scale = isnan (scale) ? 1 : scale;
   r->zero = isnan (zero) ? 0 : zero;
   r->has_blank = !isnan (tf_header_number (fits->header, "BLANK"));
   r->blank = tf_header_int (fits->header, "BLANK", 0);
-  r->by_rows = r->compressed && rows && (r->pixel_bytes == 2 || r->pixel_bytes == 4) && (fits->bitpix == 16 || fits->bitpix == 32)
-               && fits->bitpix >= (int)r->pixel_bytes * 8 && !has_column (fits->file, "ZSCALE") && !has_column (fits->file, "ZBLANK");
+  r->by_rows = r->compressed && rows && (r->pixel_bytes == 2 || r->pixel_bytes == 4)
+               && (fits->bitpix == 16 || fits->bitpix == 32)
+               && fits->bitpix >= (int)r->pixel_bytes * 8 && !has_column (fits->file, "ZSCALE")
+               && !has_column (fits->file, "ZBLANK");
   fits_clear_errmsg ();
 }
 
-/* The packed bytes of table row @row (1-based) into @bytes. FALSE: the descriptor points out of the heap, or CFITSIO. */
+/* The packed bytes of table row @row (1-based) into @bytes. FALSE: the descriptor points out of
+ * the heap, or CFITSIO. */
 static gboolean
-read_bytes (fitsfile *file, int column, LONGLONG row, LONGLONG length, LONGLONG offset, GByteArray *bytes, int *status)
+read_bytes (fitsfile *file, int column, LONGLONG row, LONGLONG length, LONGLONG offset,
+            GByteArray *bytes, int *status)
 {
   LONGLONG left = file->Fptr->filesize - file->Fptr->datastart - file->Fptr->heapstart;
   if (length < 0 || offset < 0 || length > left || offset > left - length)
@@ -87,7 +93,8 @@ read_bytes (fitsfile *file, int column, LONGLONG row, LONGLONG length, LONGLONG 
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-to_floats (const gint32 *stored, guint n, double scale, double zero, gboolean has_blank, gint32 blank, float *out)
+to_floats (const gint32 *stored, guint n, double scale, double zero, gboolean has_blank,
+           gint32 blank, float *out)
 {
   for (guint x = 0; x < n; x++)
     {
@@ -97,11 +104,13 @@ to_floats (const gint32 *stored, guint n, double scale, double zero, gboolean ha
 }
 
 gboolean
-tf_rice_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, gboolean *damaged, int *status)
+tf_rice_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, gboolean *damaged,
+                   int *status)
 {
   const TfRice *r = &fits->rice;
   guint width = (guint)fits->axes[0];
-  LONGLONG row = (LONGLONG)(plane - 1) * fits->axes[1] + first + 1, largest = (LONGLONG)width * 8 + 1024;
+  LONGLONG row = (LONGLONG)(plane - 1) * fits->axes[1] + first + 1,
+           largest = (LONGLONG)width * 8 + 1024;
   g_autofree LONGLONG *lengths = g_new0 (LONGLONG, n), *offsets = g_new0 (LONGLONG, n);
   g_autofree gint32 *stored = g_new (gint32, width);
   g_autoptr (GByteArray) bytes = g_byte_array_new ();
@@ -120,11 +129,14 @@ tf_rice_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, 
             return FALSE;
           continue;
         }
-      *damaged = lengths[k] > largest || !read_bytes (fits->file, r->column, row + k, lengths[k], offsets[k], bytes, status)
-                 || !tf_rice_decode (bytes->data, bytes->len, r->pixel_bytes, r->block, width, stored);
+      *damaged
+          = lengths[k] > largest
+            || !read_bytes (fits->file, r->column, row + k, lengths[k], offsets[k], bytes, status)
+            || !tf_rice_decode (bytes->data, bytes->len, r->pixel_bytes, r->block, width, stored);
       if (*damaged)
         return FALSE;
-      to_floats (stored, width, r->scale, r->zero, r->has_blank && in_range, (gint32)r->blank, line);
+      to_floats (stored, width, r->scale, r->zero, r->has_blank && in_range, (gint32)r->blank,
+                 line);
     }
   return TRUE;
 }
@@ -136,7 +148,8 @@ tile_pixels (const TfFits *fits, gint64 index)
   gint64 pixels = 1;
   for (int k = 0; k < fits->n_axes; k++)
     {
-      gint64 tile = fits->rice.tile[k], along = (fits->axes[k] + tile - 1) / tile, at = index % along;
+      gint64 tile = fits->rice.tile[k], along = (fits->axes[k] + tile - 1) / tile,
+             at = index % along;
       pixels *= MIN (tile, fits->axes[k] - at * tile);
       index /= along;
     }
@@ -166,7 +179,8 @@ tf_rice_check (const TfFits *fits)
       if (length == 0)
         continue;
       if (!read_bytes (fits->file, r->column, k + 1, length, offset, bytes, &status)
-          || !tf_rice_decode (bytes->data, bytes->len, r->pixel_bytes, r->block, tile_pixels (fits, k), stored))
+          || !tf_rice_decode (bytes->data, bytes->len, r->pixel_bytes, r->block,
+                              tile_pixels (fits, k), stored))
         return FALSE;
     }
   return stored != NULL;

@@ -5,8 +5,8 @@
 
 #include <string.h>
 
-/* The bits of a tile, most significant first. Beyond the end come zeros, and `over` grows; every call that may go over is
- * followed by a look at it before the number is used. */
+/* The bits of a tile, most significant first. Beyond the end come zeros, and `over` grows;
+ * every call that may go over is followed by a look at it before the number is used. */
 typedef struct
 {
   const guint8 *next, *end;
@@ -90,10 +90,13 @@ unfold (guint32 packed)
 }
 
 gboolean
-tf_rice_decode (const guint8 *bytes, gsize n_bytes, guint pixel_bytes, guint block, guint n, gint32 *out)
+tf_rice_decode (const guint8 *bytes, gsize n_bytes, guint pixel_bytes, guint block, guint n,
+                gint32 *out)
 {
   const guint code_bits = pixel_bytes == 4 ? 5 : pixel_bytes == 2 ? 4 : 3;
-  const guint raw_code = pixel_bytes == 4 ? 25 : pixel_bytes == 2 ? 14 : 6; /* differences stand unpacked */
+  const guint raw_code = pixel_bytes == 4   ? 25
+                         : pixel_bytes == 2 ? 14
+                                            : 6; /* differences stand unpacked */
   const guint width = 8 * pixel_bytes, up = 32 - width;
   Bits b = { bytes, bytes + n_bytes, 0, 0, FALSE };
   g_return_val_if_fail (block > 0, FALSE);

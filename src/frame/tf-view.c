@@ -6,8 +6,8 @@
 #include "tf-constants.h"
 #include "tf-picture.h"
 
-/* View <-> frame pixel <-> Sun. (u, w) is the offset from the middle of the view, w up: in frame pixels for DISK, in
- * degrees for UNROLLED and CLOSE. */
+/* View <-> frame pixel <-> Sun. (u, w) is the offset from the middle of the view, w up: in
+ * frame pixels for DISK, in degrees for UNROLLED and CLOSE. */
 
 typedef struct
 {
@@ -75,13 +75,15 @@ static gboolean
 to_lonlat (const TfView *view, double vx, double vy, double *lon, double *lat)
 {
   Offset o = offset_of (view, vx, vy);
-  return view->look == TF_LOOK_UNROLLED ? unrolled_to_lonlat (view, o, lon, lat) : close_to_lonlat (view, o, lon, lat);
+  return view->look == TF_LOOK_UNROLLED ? unrolled_to_lonlat (view, o, lon, lat)
+                                        : close_to_lonlat (view, o, lon, lat);
 }
 
 /* -- the four ways --------------------------------------------------------------------------- */
 
 gboolean
-tf_view_to_pixel (const TfView *view, const TfGeometry *geometry, double vx, double vy, double *x, double *y)
+tf_view_to_pixel (const TfView *view, const TfGeometry *geometry, double vx, double vy, double *x,
+                  double *y)
 {
   if (view->look == TF_LOOK_DISK)
     {
@@ -93,11 +95,13 @@ tf_view_to_pixel (const TfView *view, const TfGeometry *geometry, double vx, dou
     }
   double lon, lat;
   *x = *y = NAN;
-  return to_lonlat (view, vx, vy, &lon, &lat) && tf_geometry_sun_to_pixel (geometry, lon, lat, x, y, NULL);
+  return to_lonlat (view, vx, vy, &lon, &lat)
+         && tf_geometry_sun_to_pixel (geometry, lon, lat, x, y, NULL);
 }
 
 gboolean
-tf_view_from_pixel (const TfView *view, const TfGeometry *geometry, double x, double y, double *vx, double *vy)
+tf_view_from_pixel (const TfView *view, const TfGeometry *geometry, double x, double y, double *vx,
+                    double *vy)
 {
   *vx = *vy = NAN;
   if (view->look == TF_LOOK_DISK)
@@ -113,23 +117,28 @@ tf_view_from_pixel (const TfView *view, const TfGeometry *geometry, double x, do
 }
 
 gboolean
-tf_view_to_sun (const TfView *view, const TfGeometry *geometry, double vx, double vy, TfPlace *place)
+tf_view_to_sun (const TfView *view, const TfGeometry *geometry, double vx, double vy,
+                TfPlace *place)
 {
   double x, y, lon, lat;
   *place = (TfPlace){ NAN, NAN, NAN, NAN, NAN };
   if (view->look == TF_LOOK_DISK)
-    return tf_view_to_pixel (view, geometry, vx, vy, &x, &y) && tf_geometry_pixel_to_sun (geometry, x, y, place);
+    return tf_view_to_pixel (view, geometry, vx, vy, &x, &y)
+           && tf_geometry_pixel_to_sun (geometry, x, y, place);
   if (!to_lonlat (view, vx, vy, &lon, &lat))
     return FALSE;
-  if (tf_geometry_sun_to_pixel (geometry, lon, lat, &x, &y, NULL) && tf_geometry_pixel_to_sun (geometry, x, y, place))
+  if (tf_geometry_sun_to_pixel (geometry, lon, lat, &x, &y, NULL)
+      && tf_geometry_pixel_to_sun (geometry, x, y, place))
     return TRUE;
   *place = (TfPlace){ tf_geometry_stonyhurst_of (geometry, lon), lon, lat,
-                      tf_wrap_180 (lon - tf_geometry_central_carrington (geometry)), NAN }; /* behind the limb: no mu */
+                      tf_wrap_180 (lon - tf_geometry_central_carrington (geometry)),
+                      NAN }; /* behind the limb: no mu */
   return TRUE;
 }
 
 gboolean
-tf_view_from_sun (const TfView *view, const TfGeometry *geometry, double lon_deg, double lat_deg, double *vx, double *vy)
+tf_view_from_sun (const TfView *view, const TfGeometry *geometry, double lon_deg, double lat_deg,
+                  double *vx, double *vy)
 {
   double x, y;
   *vx = *vy = NAN;
@@ -137,8 +146,9 @@ tf_view_from_sun (const TfView *view, const TfGeometry *geometry, double lon_deg
     return FALSE;
   if (view->look == TF_LOOK_DISK)
     return tf_view_from_pixel (view, geometry, x, y, vx, vy);
-  point_of (view, view->look == TF_LOOK_UNROLLED ? unrolled_from_lonlat (view, lon_deg, lat_deg)
-                                                 : close_from_lonlat (view, lon_deg, lat_deg),
+  point_of (view,
+            view->look == TF_LOOK_UNROLLED ? unrolled_from_lonlat (view, lon_deg, lat_deg)
+                                           : close_from_lonlat (view, lon_deg, lat_deg),
             vx, vy);
   return TRUE;
 }
@@ -155,8 +165,8 @@ fit_disk (TfView *view, const TfGeometry *g)
   double wide = c * g->width + s * g->height, high = s * g->width + c * g->height;
   view->centre_x = 0.5 * (g->width + 1);
   view->centre_y = 0.5 * (g->height + 1);
-  if (!tf_geometry_is_map (g) && tf_geometry_disk_centre (g, &cx, &cy) && cx > 0 && cx < g->width + 1 && cy > 0
-      && cy < g->height + 1 && 1.5 * r < MAX (wide, high))
+  if (!tf_geometry_is_map (g) && tf_geometry_disk_centre (g, &cx, &cy) && cx > 0
+      && cx < g->width + 1 && cy > 0 && cy < g->height + 1 && 1.5 * r < MAX (wide, high))
     {
       view->centre_x = cx;
       view->centre_y = cy;
@@ -191,7 +201,8 @@ tf_view_fit (TfView *view, const TfGeometry *geometry, gboolean north_up)
   if (view->look == TF_LOOK_UNROLLED)
     fit_unrolled (view, geometry);
   else if (view->look == TF_LOOK_CLOSE)
-    view->zoom = MIN (view->width, view->height) / 20; /* 20 deg about the centre, which the caller has set */
+    view->zoom = MIN (view->width, view->height)
+                 / 20; /* 20 deg about the centre, which the caller has set */
   else
     {
       view->turn_deg = north_up && isfinite (north) && !tf_geometry_is_map (geometry) ? north : 0;
@@ -230,8 +241,9 @@ tf_view_pan (TfView *view, const TfGeometry *geometry, double dx, double dy)
 static gboolean
 under (const TfView *view, const TfGeometry *geometry, double vx, double vy, double place[2])
 {
-  return view->look == TF_LOOK_DISK ? tf_view_to_pixel (view, geometry, vx, vy, &place[0], &place[1])
-                                    : to_lonlat (view, vx, vy, &place[0], &place[1]);
+  return view->look == TF_LOOK_DISK
+             ? tf_view_to_pixel (view, geometry, vx, vy, &place[0], &place[1])
+             : to_lonlat (view, vx, vy, &place[0], &place[1]);
 }
 
 void
@@ -243,13 +255,15 @@ tf_view_zoom (TfView *view, const TfGeometry *geometry, double factor, double vx
   if (!(factor > 0))
     return;
   view->zoom = CLAMP (view->zoom * factor, least[view->look], most[view->look]);
-  for (guint turn = 0; held && turn < 8; turn++) /* one turn but for CLOSE, where moving the centre turns the picture */
+  for (guint turn = 0; held && turn < 8;
+       turn++) /* one turn but for CLOSE, where moving the centre turns the picture */
     {
       if (view->look == TF_LOOK_DISK)
         tf_view_from_pixel (view, geometry, place[0], place[1], &x, &y);
       else
-        point_of (view, view->look == TF_LOOK_UNROLLED ? unrolled_from_lonlat (view, place[0], place[1])
-                                                       : close_from_lonlat (view, place[0], place[1]),
+        point_of (view,
+                  view->look == TF_LOOK_UNROLLED ? unrolled_from_lonlat (view, place[0], place[1])
+                                                 : close_from_lonlat (view, place[0], place[1]),
                   &x, &y);
       if (!isfinite (x + y) || hypot (vx - x, vy - y) < 1e-9)
         break;

@@ -3,8 +3,8 @@
  */
 #pragma once
 
-/* What pixels tell about a geometry: the limb (centre, radius and scale only) and the orientation witness.
- * Neither corrects anything by itself. */
+/* What pixels tell about a geometry: the limb (centre, radius and scale only) and the
+ * orientation witness. Neither corrects anything by itself. */
 
 #include <glib.h>
 
@@ -17,12 +17,13 @@ typedef struct
   gboolean found;
   double centre_x, centre_y; /* FITS pixels */
   double radius_px;
-  double sigma_px;     /* scatter of the limb points about the circle */
+  double sigma_px; /* scatter of the limb points about the circle */
   guint n_points;
 } TfLimbFit;
 
-/** tf_limb_fit: a circle through the edge of the valid pixels (or of the noise, where the whole array is filled): edges along
- * rays, robust least squares. found is FALSE on cut-outs and maps and when fewer than 60 deg of limb are seen. */
+/** tf_limb_fit: a circle through the edge of the valid pixels (or of the noise, where the whole
+ * array is filled): edges along rays, robust least squares. found is FALSE on cut-outs and maps
+ * and when fewer than 60 deg of limb are seen. */
 TfLimbFit tf_limb_fit (const float *pixels, const TfGeometry *geometry);
 /** tf_limb_judge: caution above max (0.2 %, 0.5 px); "header-lies" above 1 %. Adds to @cautions. */
 void tf_limb_judge (const TfLimbFit *fit, const TfGeometry *geometry, TfNotes *cautions);
@@ -31,13 +32,15 @@ typedef enum
 {
   TF_WITNESS_CANNOT_SAY,
   TF_WITNESS_AGREES,
-  TF_WITNESS_TURNED,    /* features move as on a disk turned by 180 deg */
-  TF_WITNESS_MIRRORED,  /* features move against the turn with the rows the other way */
+  TF_WITNESS_TURNED,   /* features move as on a disk turned by 180 deg */
+  TF_WITNESS_MIRRORED, /* features move against the turn with the rows the other way */
 } TfOrientation;
 
-/** tf_orientation_witness: two frames of one instrument at least 3 h apart: do features move west at the Sun's rate under the
- * header's orientation, or better under a turned one? @score: (out) (nullable): correlations of the four readings:
- * as given, turned 180, mirrored east-west, mirrored north-south. @reason: (out) (nullable): why it cannot say. */
-TfOrientation tf_orientation_witness (const TfFrame *earlier, const TfFrame *later, double score[4], TfNote **reason);
+/** tf_orientation_witness: two frames of one instrument at least 3 h apart: do features move
+ * west at the Sun's rate under the header's orientation, or better under a turned one? @score:
+ * (out) (nullable): correlations of the four readings: as given, turned 180, mirrored
+ * east-west, mirrored north-south. @reason: (out) (nullable): why it cannot say. */
+TfOrientation tf_orientation_witness (const TfFrame *earlier, const TfFrame *later, double score[4],
+                                      TfNote **reason);
 
 G_END_DECLS

@@ -19,7 +19,8 @@ peak_kb (void)
   return usage.ru_maxrss;
 }
 
-/* One clear sentence or a correct read: the error names the file, is one line, and no file makes memory grow. */
+/* One clear sentence or a correct read: the error names the file, is one line, and no file
+ * makes memory grow. */
 static void
 open_and_judge (const char *path)
 {
@@ -118,12 +119,14 @@ read_all (const char *name, guint *n)
   for (guint y = 0; y < tf_fits_get_height (fits); y += 13)
     {
       guint rows = MIN (13, tf_fits_get_height (fits) - y);
-      g_assert_true (tf_fits_read_rows (fits, 1, y, rows, pixels + (gsize)y * tf_fits_get_width (fits), NULL));
+      g_assert_true (
+          tf_fits_read_rows (fits, 1, y, rows, pixels + (gsize)y * tf_fits_get_width (fits), NULL));
     }
   return pixels;
 }
 
-/* One picture, five ways of tile compression: the same pixels (hcompress and the real one are lossy by their header). */
+/* One picture, five ways of tile compression: the same pixels (hcompress and the real one are
+ * lossy by their header). */
 static void
 test_compressions (void)
 {
@@ -150,31 +153,44 @@ test_compressions (void)
       g_assert_cmpuint (n, ==, m);
       double worst = 0;
       for (guint j = 0; j < n; j++)
-        worst = fabs ((double)a[j] - (double)b[j]) > worst ? fabs ((double)a[j] - (double)b[j]) : worst;
+        worst = fabs ((double)a[j] - (double)b[j]) > worst ? fabs ((double)a[j] - (double)b[j])
+                                                           : worst;
       tf_check_near (pairs[k].packed, worst, 0, pairs[k].tolerance);
     }
 }
 
-/* Our own unpacking of tiles against CFITSIO's, bit for bit: quiet, loud, wrapping and constant rows. */
+/* Our own unpacking of tiles against CFITSIO's, bit for bit: quiet, loud, wrapping and constant
+ * rows. */
 static void
 test_own_unpacking (void)
 {
-  enum { W = 500, H = 120 };
+  enum
+  {
+    W = 500,
+    H = 120
+  };
   g_autoptr (GRand) chance = g_rand_new_with_seed (17);
-  g_autofree float *pixels = g_new (float, W * H), *theirs = g_new (float, W * H);
+  g_autofree float *pixels = g_new (float, W *H), *theirs = g_new (float, W *H);
   g_autofree char *path = scratch_file ("rice.fits");
   for (int way = 0; way < 4; way++)
     {
-      TfFrameWrite how = { .bitpix = way % 2 ? 16 : 32, .bscale = way < 2 ? 0.1 : 1, .bzero = way == 1 ? 7 : 0, .blank = -32768,
-                           .has_blank = TRUE, .compress = TRUE };
+      TfFrameWrite how = { .bitpix = way % 2 ? 16 : 32,
+                           .bscale = way < 2 ? 0.1 : 1,
+                           .bzero = way == 1 ? 7 : 0,
+                           .blank = -32768,
+                           .has_blank = TRUE,
+                           .compress = TRUE };
       for (int k = 0; k < W * H; k++)
         {
           double reach = pow (10, k / W % 10) / 10;
-          pixels[k] = k % 91 == 4 ? NAN : k / W % 7 == 3 ? 5 : (float)g_rand_double_range (chance, -reach, reach);
+          pixels[k] = k % 91 == 4      ? NAN
+                      : k / W % 7 == 3 ? 5
+                                       : (float)g_rand_double_range (chance, -reach, reach);
         }
       g_assert_true (tf_frame_write (path, NULL, pixels, W, H, &how, NULL));
       g_autoptr (TfFits) fits = tf_fits_open (path, 0, NULL);
-      g_assert_true (fits != NULL && fits->rice.by_rows && tf_fits_check_size (fits, NULL) && tf_rice_check (fits));
+      g_assert_true (fits != NULL && fits->rice.by_rows && tf_fits_check_size (fits, NULL)
+                     && tf_rice_check (fits));
       g_assert_true (tf_fits_read_rows (fits, 1, 0, H, pixels, NULL));
       int status = 0, any = 0;
       float none = NAN;
@@ -188,19 +204,23 @@ test_own_unpacking (void)
     }
 }
 
-/* A header that claims a terabyte over a few bytes, plain and compressed: a sentence, and no memory. */
+/* A header that claims a terabyte over a few bytes, plain and compressed: a sentence, and no
+ * memory. */
 static void
 test_absurd_claims (void)
 {
-  static const char *const edits[][2] = { { "NAXIS1  =                   40", "NAXIS1  =               100000" },
-                                          { "NAXIS2  =                   40", "NAXIS2  =               100000" },
-                                          { "ZNAXIS1 =                   40", "ZNAXIS1 =               100000" },
-                                          { "ZNAXIS2 =                   40", "ZNAXIS2 =               100000" },
-                                          { "ZTILE1  =                   40", "ZTILE1  =                    0" },
-                                          { "ZTILE2  =                    1", "ZTILE2  =                   -1" } };
-  g_autoptr (TfHeader) header = tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
-                                                "CRPIX1  = 20\nCRPIX2  = 20\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 50\nCDELT2  = 50\n"
-                                                "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\n", -1);
+  static const char *const edits[][2]
+      = { { "NAXIS1  =                   40", "NAXIS1  =               100000" },
+          { "NAXIS2  =                   40", "NAXIS2  =               100000" },
+          { "ZNAXIS1 =                   40", "ZNAXIS1 =               100000" },
+          { "ZNAXIS2 =                   40", "ZNAXIS2 =               100000" },
+          { "ZTILE1  =                   40", "ZTILE1  =                    0" },
+          { "ZTILE2  =                    1", "ZTILE2  =                   -1" } };
+  g_autoptr (TfHeader) header = tf_header_read (
+      "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+      "CRPIX1  = 20\nCRPIX2  = 20\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 50\nCDELT2  = 50\n"
+      "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\n",
+      -1);
   float pixels[1600];
   for (guint k = 0; k < 1600; k++)
     pixels[k] = (float)(k % 50);
@@ -229,7 +249,8 @@ test_absurd_claims (void)
 void
 add_conformance_tests (void)
 {
-  g_test_add_data_func ("/frame/conformance/every-file-ends-in-a-sentence-or-a-read", "conformance", test_folder);
+  g_test_add_data_func ("/frame/conformance/every-file-ends-in-a-sentence-or-a-read", "conformance",
+                        test_folder);
   g_test_add_data_func ("/frame/conformance/invalid-files-too", "conformance/invalid", test_folder);
   g_test_add_data_func ("/frame/broken/every-file-ends-in-a-sentence", "broken", test_folder);
   g_test_add_func ("/frame/broken/the-right-sentence", test_broken);

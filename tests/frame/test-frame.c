@@ -13,7 +13,9 @@ char *
 shared_data (const char *name)
 {
   const char *set = g_getenv ("TF_SHARED_DATA");
-  g_autofree char *top = set != NULL ? g_strdup (set) : g_build_filename (TF_SOURCE_ROOT, "..", "shared", "data", NULL);
+  g_autofree char *top = set != NULL
+                             ? g_strdup (set)
+                             : g_build_filename (TF_SOURCE_ROOT, "..", "shared", "data", NULL);
   char *path = g_build_filename (top, name, NULL);
   if (g_file_test (path, G_FILE_TEST_EXISTS))
     return path;
@@ -43,12 +45,13 @@ disk_info (guint side, double radius_px, double north_angle_deg)
   double radius_arcsec = asin (TF_RADIUS_MM * 1e6 / TF_AU_M) / TF_ARCSEC;
   char scale[G_ASCII_DTOSTR_BUF_SIZE];
   g_ascii_dtostr (scale, sizeof scale, tan (radius_arcsec * TF_ARCSEC) / TF_ARCSEC / radius_px);
-  g_autofree char *text = g_strdup_printf ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
-                                           "CRPIX1  = %d.5\nCRPIX2  = %d.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = %s\n"
-                                           "CDELT2  = %s\n%sDATE-AVG= '2013-10-12T06:00:00'\nDSUN_OBS= 149597870700.0\n"
-                                           "HGLN_OBS= 0.0\nHGLT_OBS= 5.0\nCRLN_OBS= 120.0\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\n"
-                                           "TELESCOP= 'TEST'\n",
-                                           side / 2, side / 2, scale, scale, angle);
+  g_autofree char *text = g_strdup_printf (
+      "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+      "CRPIX1  = %d.5\nCRPIX2  = %d.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = %s\n"
+      "CDELT2  = %s\n%sDATE-AVG= '2013-10-12T06:00:00'\nDSUN_OBS= 149597870700.0\n"
+      "HGLN_OBS= 0.0\nHGLT_OBS= 5.0\nCRLN_OBS= 120.0\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\n"
+      "TELESCOP= 'TEST'\n",
+      side / 2, side / 2, scale, scale, angle);
   g_autoptr (TfHeader) header = tf_header_read (text, -1);
   return tf_frame_info_read (header, side, side);
 }

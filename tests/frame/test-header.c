@@ -22,12 +22,18 @@ static void
 test_values (void)
 {
   static const char *const cards[] = {
-    "SIMPLE  =                    T / a comment",  "NAXIS1  =                 1024",
-    "CDELT1  =           1.98600D0 / double",      "OBJECT  = 'the ''quiet'' Sun  ' / quoted",
-    "DATE-OBS= 2011/04/01 / bare, with slashes",  "HGLN_OBS= nan",
-    "EMPTY   =                      / nothing",    "COMMENT = not kept",
-    "HISTORY what happened",                       "lower   = 3",
-    "END",                                         "AFTER   = 1",
+    "SIMPLE  =                    T / a comment",
+    "NAXIS1  =                 1024",
+    "CDELT1  =           1.98600D0 / double",
+    "OBJECT  = 'the ''quiet'' Sun  ' / quoted",
+    "DATE-OBS= 2011/04/01 / bare, with slashes",
+    "HGLN_OBS= nan",
+    "EMPTY   =                      / nothing",
+    "COMMENT = not kept",
+    "HISTORY what happened",
+    "lower   = 3",
+    "END",
+    "AFTER   = 1",
     NULL,
   };
   g_autoptr (TfHeader) h = from_cards (cards);
@@ -49,7 +55,8 @@ test_values (void)
 static void
 test_continued (void)
 {
-  static const char *const cards[] = { "LONGKEY = 'one &'", "CONTINUE  'two&'", "CONTINUE  '' / end", "NEXT    = 5", NULL };
+  static const char *const cards[]
+      = { "LONGKEY = 'one &'", "CONTINUE  'two&'", "CONTINUE  '' / end", "NEXT    = 5", NULL };
   g_autoptr (TfHeader) h = from_cards (cards);
   g_assert_cmpstr (tf_header_get (h, "LONGKEY"), ==, "one two");
   g_assert_cmpint (tf_header_int (h, "NEXT", -1), ==, 5);
@@ -58,7 +65,8 @@ test_continued (void)
 static void
 test_lines (void)
 {
-  g_autoptr (TfHeader) h = tf_header_read ("CRPIX1  = 5.5\r\nOBJECT=  'x'\nnot a card\n\nEND\nLATE = 1\n", -1);
+  g_autoptr (TfHeader) h
+      = tf_header_read ("CRPIX1  = 5.5\r\nOBJECT=  'x'\nnot a card\n\nEND\nLATE = 1\n", -1);
   tf_check_near ("a line", tf_header_number (h, "CRPIX1"), 5.5, 0);
   g_assert_cmpstr (tf_header_get (h, "OBJECT"), ==, "x");
   g_assert_cmpuint (tf_header_get_n (h), ==, 2);
@@ -94,7 +102,8 @@ test_rubbish (void)
     {
       char text[1000];
       for (guint k = 0; k < sizeof text; k++)
-        text[k] = g_rand_boolean (chance) ? "='/& \nEND"[g_rand_int_range (chance, 0, 9)] : (char)g_rand_int_range (chance, 0, 256);
+        text[k] = g_rand_boolean (chance) ? "='/& \nEND"[g_rand_int_range (chance, 0, 9)]
+                                          : (char)g_rand_int_range (chance, 0, 256);
       g_autoptr (TfHeader) h = tf_header_read (text, sizeof text);
       for (guint k = 0; k < tf_header_get_n (h); k++)
         g_assert_true (g_utf8_validate (tf_header_get (h, tf_header_get_keyword (h, k)), -1, NULL));

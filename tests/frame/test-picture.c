@@ -9,7 +9,8 @@
 #include "tf-constants.h"
 #include "tf-picture.h"
 
-static const TfPaint paint = { .range_gauss = 100, .palette = TF_PALETTE_GREY, .ground = 0xff112233u };
+static const TfPaint paint
+    = { .range_gauss = 100, .palette = TF_PALETTE_GREY, .ground = 0xff112233u };
 
 /* A disk of 200 pixels a side whose field is a smooth function of the place, NaN off the disk. */
 static TfFrame *
@@ -21,7 +22,8 @@ smooth_disk (double turn)
     {
       TfPlace p;
       gboolean on = tf_geometry_pixel_to_sun (&info->geometry, k % 200 + 1.0, k / 200 + 1.0, &p);
-      pixels[k] = on ? (float)(60 * sin (p.lat_deg * TF_DEG * 2) + 30 * sin (p.cmd_deg * TF_DEG)) : NAN;
+      pixels[k]
+          = on ? (float)(60 * sin (p.lat_deg * TF_DEG * 2) + 30 * sin (p.cmd_deg * TF_DEG)) : NAN;
     }
   return tf_frame_new (info, pixels, NULL);
 }
@@ -34,14 +36,16 @@ check_round_trip (TfView *view, const TfGeometry *g)
       {
         double x, y, bx, by;
         TfPlace place;
-        if (tf_view_to_pixel (view, g, vx, vy, &x, &y) && tf_view_from_pixel (view, g, x, y, &bx, &by))
+        if (tf_view_to_pixel (view, g, vx, vy, &x, &y)
+            && tf_view_from_pixel (view, g, x, y, &bx, &by))
           {
             tf_check_near ("view x there and back", bx, vx, 1e-6);
             tf_check_near ("view y there and back", by, vy, 1e-6);
           }
         if (tf_view_to_sun (view, g, vx, vy, &place) && !isnan (place.mu) && place.mu > 0.02)
           {
-            g_assert_true (tf_view_from_sun (view, g, place.carrington_lon_deg, place.lat_deg, &bx, &by));
+            g_assert_true (
+                tf_view_from_sun (view, g, place.carrington_lon_deg, place.lat_deg, &bx, &by));
             tf_check_near ("view x over the Sun", bx, vx, 1e-4);
             tf_check_near ("view y over the Sun", by, vy, 1e-4);
           }
@@ -57,7 +61,11 @@ test_views (void)
       const TfGeometry *g = tf_frame_get_geometry (frame);
       for (int look = 0; look < 3; look++)
         {
-          TfView view = { .look = (TfLook)look, .width = 640, .height = 480, .centre_lon_deg = 140, .centre_lat_deg = 15 };
+          TfView view = { .look = (TfLook)look,
+                          .width = 640,
+                          .height = 480,
+                          .centre_lon_deg = 140,
+                          .centre_lat_deg = 15 };
           double x, y;
           tf_view_fit (&view, g, TRUE);
           check_round_trip (&view, g);
@@ -66,10 +74,12 @@ test_views (void)
           g_assert_true (tf_view_to_sun (&view, g, vx, vy, &before));
           tf_view_zoom (&view, g, 2.5, vx, vy);
           g_assert_true (tf_view_to_sun (&view, g, vx, vy, &after));
-          tf_check_near ("longitude under the pointer", after.carrington_lon_deg, before.carrington_lon_deg, 1e-6);
+          tf_check_near ("longitude under the pointer", after.carrington_lon_deg,
+                         before.carrington_lon_deg, 1e-6);
           tf_check_near ("latitude under the pointer", after.lat_deg, before.lat_deg, 1e-6);
           tf_view_pan (&view, g, 13, -7);
-          g_assert_true (tf_view_from_sun (&view, g, after.carrington_lon_deg, after.lat_deg, &x, &y));
+          g_assert_true (
+              tf_view_from_sun (&view, g, after.carrington_lon_deg, after.lat_deg, &x, &y));
           tf_check_near ("dragged right", x, vx + 13, look == TF_LOOK_CLOSE ? 0.5 : 1e-6);
           tf_check_near ("dragged up", y, vy - 7, look == TF_LOOK_CLOSE ? 0.5 : 1e-6);
           check_round_trip (&view, g);
@@ -99,7 +109,8 @@ test_north_up (void)
     }
 }
 
-/* The colour of every view pixel against the field at its place: smooth, so that a seam or a shift would show. */
+/* The colour of every view pixel against the field at its place: smooth, so that a seam or a
+ * shift would show. */
 static void
 test_render (void)
 {
@@ -109,7 +120,11 @@ test_render (void)
   for (int look = 0; look < 3; look++)
     for (double zoom = 0.5; zoom < 9; zoom *= 2)
       {
-        TfView view = { .look = (TfLook)look, .width = 400, .height = 300, .centre_lon_deg = 120, .centre_lat_deg = 10 };
+        TfView view = { .look = (TfLook)look,
+                        .width = 400,
+                        .height = 300,
+                        .centre_lon_deg = 120,
+                        .centre_lat_deg = 10 };
         tf_view_fit (&view, g, TRUE);
         view.zoom *= zoom;
         g_assert_true (tf_picture_render (frame, &view, &paint, out, 400, NULL));
@@ -123,12 +138,14 @@ test_render (void)
               {
                 double x, y; /* at most a pixel beyond the limb */
                 gboolean there = tf_view_to_pixel (&view, g, vx, vy, &x, &y);
-                tf_check_between ("beyond the limb", there ? hypot (x - 100.5, y - 100.5) : 1e9, 0, 92.5);
+                tf_check_between ("beyond the limb", there ? hypot (x - 100.5, y - 100.5) : 1e9, 0,
+                                  92.5);
               }
             if (!on || p.mu < 0.35)
               continue;
             double value = 60 * sin (p.lat_deg * TF_DEG * 2) + 30 * sin (p.cmd_deg * TF_DEG);
-            tf_check_near ("a grey", out[k] & 255, 127.5 * (value / 100 + 1), look == TF_LOOK_DISK && zoom > 2 ? 4 : 3);
+            tf_check_near ("a grey", out[k] & 255, 127.5 * (value / 100 + 1),
+                           look == TF_LOOK_DISK && zoom > 2 ? 4 : 3);
             shown++;
           }
         g_assert_cmpuint (shown, >, 1000);
@@ -139,8 +156,10 @@ test_render (void)
 static void
 test_map_seam (void)
 {
-  const char *text = "CTYPE1  = 'CRLN-CEA'\nCTYPE2  = 'CRLT-CEA'\nCUNIT1  = 'deg'\nCUNIT2  = 'deg'\nCRPIX1  = 180.5\nCRPIX2  = 90.5\n"
-                     "CRVAL1  = 200\nCRVAL2  = 0\nCDELT1  = 1\nCDELT2  = 0.63661977236758\nCAR_ROT = 2100\nBUNIT   = 'G'\n";
+  const char *text = "CTYPE1  = 'CRLN-CEA'\nCTYPE2  = 'CRLT-CEA'\nCUNIT1  = 'deg'\nCUNIT2  = "
+                     "'deg'\nCRPIX1  = 180.5\nCRPIX2  = 90.5\n"
+                     "CRVAL1  = 200\nCRVAL2  = 0\nCDELT1  = 1\nCDELT2  = 0.63661977236758\nCAR_ROT "
+                     "= 2100\nBUNIT   = 'G'\n";
   g_autoptr (TfHeader) header = tf_header_read (text, -1);
   TfFrameInfo *info = tf_frame_info_read (header, 360, 180);
   g_assert_cmpint (info->kind, ==, TF_KIND_MAP);
@@ -149,7 +168,8 @@ test_map_seam (void)
     pixels[k] = k % 360 < 180 ? -80 : 80; /* the seam (20 deg) and the middle (200 deg) are steps */
   g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
   g_autofree guint32 *out = g_new (guint32, 720 * 100);
-  TfView view = { .look = TF_LOOK_UNROLLED, .width = 720, .height = 100, .zoom = 2, .centre_lon_deg = 20 };
+  TfView view
+      = { .look = TF_LOOK_UNROLLED, .width = 720, .height = 100, .zoom = 2, .centre_lon_deg = 20 };
   g_assert_true (tf_picture_render (frame, &view, &paint, out, 720, NULL));
   for (guint row = 0; row < 100; row += 9)
     for (guint x = 4; x < 716; x++)
@@ -188,7 +208,9 @@ test_palettes (void)
   for (guint k = 0; k < 64 * 64; k++)
     pixels[k] = k % 64 < 20 ? -1000 : k % 64 < 40 ? 0 : 1000;
   g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
-  TfView view = { .look = TF_LOOK_DISK, .width = 64, .height = 64, .zoom = 1, .centre_x = 32.5, .centre_y = 32.5 };
+  TfView view = {
+    .look = TF_LOOK_DISK, .width = 64, .height = 64, .zoom = 1, .centre_x = 32.5, .centre_y = 32.5
+  };
   guint32 out[64 * 64];
   TfPaint p = paint;
   g_assert_true (tf_picture_render (frame, &view, &p, out, 64, NULL));

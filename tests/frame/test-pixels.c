@@ -15,7 +15,8 @@ enum
   SIDE = 512
 };
 
-/* Noise of 12 (1 + (1 - mu)) G; with @active, fields of 20 to 1500 G over a third of the activity belts. */
+/* Noise of 12 (1 + (1 - mu)) G; with @active, fields of 20 to 1500 G over a third of the
+ * activity belts. */
 static float *
 noisy_disk (const TfGeometry *g, guint32 seed, gboolean active)
 {
@@ -26,7 +27,8 @@ noisy_disk (const TfGeometry *g, guint32 seed, gboolean active)
       TfPlace p;
       gboolean on = tf_geometry_pixel_to_sun (g, k % g->width + 1.0, k / g->width + 1.0, &p);
       double field = 0;
-      if (active && on && fabs (fabs (p.lat_deg) - 20) < 14 && sin (p.cmd_deg * 8 * TF_DEG) + 0.4 * sin (p.lat_deg * 0.9) > 0.6)
+      if (active && on && fabs (fabs (p.lat_deg) - 20) < 14
+          && sin (p.cmd_deg * 8 * TF_DEG) + 0.4 * sin (p.lat_deg * 0.9) > 0.6)
         field = (g_rand_boolean (chance) ? 1 : -1) * 20 * exp (4.3 * g_rand_double (chance));
       pixels[k] = on ? (float)(field + 12 * (2 - p.mu) * normal (chance)) : NAN;
     }
@@ -48,7 +50,9 @@ check_noise (gboolean active, guint32 seed, float step)
   for (guint k = 1; k < n; k++)
     g_assert_cmpfloat (rings[k].mu, >, rings[k - 1].mu);
   for (double mu = 0.2; mu < 0.96; mu += 0.15)
-    tf_check_near ("sigma within 5 %", tf_frame_noise_at (frame, mu) / hypot (12 * (2 - mu), step / sqrt (12)), 1, 0.05);
+    tf_check_near ("sigma within 5 %",
+                   tf_frame_noise_at (frame, mu) / hypot (12 * (2 - mu), step / sqrt (12)), 1,
+                   0.05);
   tf_check_near ("held at the end", tf_frame_noise_at (frame, 1.0), rings[n - 1].gauss, 1e-9);
   tf_check_nan ("no mu, no sigma", tf_frame_noise_at (frame, NAN));
   tf_check_near ("independent pixels", tf_frame_noise_correlation (frame), 1, 0.1);
@@ -76,8 +80,8 @@ test_stepped_noise (void)
     }
 }
 
-/* White noise smoothed by a Gaussian of 0.7 pixels: the variance of a large sum is that of the unsmoothed pixels, so the
- * factor is 1 / sum of the squared kernel. */
+/* White noise smoothed by a Gaussian of 0.7 pixels: the variance of a large sum is that of the
+ * unsmoothed pixels, so the factor is 1 / sum of the squared kernel. */
 static void
 test_correlation (void)
 {
@@ -94,7 +98,8 @@ test_correlation (void)
     }
   TfFrameInfo *info = disk_info (SIDE, 240, 0);
   g_autoptr (GRand) chance = g_rand_new_with_seed (9);
-  g_autofree float *raw = g_new (float, SIDE * SIDE), *rows = g_new0 (float, SIDE * SIDE), *out = g_new0 (float, SIDE * SIDE);
+  g_autofree float *raw = g_new (float, SIDE *SIDE), *rows = g_new0 (float, SIDE *SIDE),
+                   *out = g_new0 (float, SIDE *SIDE);
   for (guint k = 0; k < SIDE * SIDE; k++)
     raw[k] = (float)(20 * normal (chance));
   for (guint k = 3; k < SIDE * SIDE - 3; k++)
@@ -124,18 +129,27 @@ test_no_noise (void)
   tf_check_near ("its correlation", tf_frame_noise_correlation (nothing), 1, 0);
 }
 
-/* Every level's pixel is the mean of the finite frame pixels under it, also where the sides are odd. */
+/* Every level's pixel is the mean of the finite frame pixels under it, also where the sides are
+ * odd. */
 static void
 test_pyramid (void)
 {
-  enum { W = 301, H = 203 };
-  const char *text = "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\nCRPIX1  = 100\nCRPIX2  = 90\n"
-                     "CRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 2\nCDELT2  = 2\nDATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\n";
+  enum
+  {
+    W = 301,
+    H = 203
+  };
+  const char *text = "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = "
+                     "'arcsec'\nCRPIX1  = 100\nCRPIX2  = 90\n"
+                     "CRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 2\nCDELT2  = 2\nDATE-AVG= "
+                     "'2013-10-12T06:00:00'\nBUNIT   = 'G'\n";
   g_autoptr (TfHeader) header = tf_header_read (text, -1);
   g_autoptr (GRand) chance = g_rand_new_with_seed (2);
-  g_autofree float *pixels = g_new (float, W * H);
+  g_autofree float *pixels = g_new (float, W *H);
   for (guint k = 0; k < W * H; k++)
-    pixels[k] = g_rand_int_range (chance, 0, 3) == 0 || (k % W < 40 && k / W < 40) ? NAN : (float)g_rand_double_range (chance, -100, 100);
+    pixels[k] = g_rand_int_range (chance, 0, 3) == 0 || (k % W < 40 && k / W < 40)
+                    ? NAN
+                    : (float)g_rand_double_range (chance, -100, 100);
   g_autoptr (TfFrame) frame = tf_frame_new (tf_frame_info_read (header, W, H), pixels, NULL);
   guint level = 0, w, h;
   for (const float *data; (data = tf_frame_get_level (frame, level, &w, &h)) != NULL; level++)
@@ -169,15 +183,19 @@ test_same_bits (void)
   TfFrameInfo *info = disk_info (SIDE, 240, 0);
   g_autofree float *pixels = noisy_disk (&info->geometry, 5, TRUE);
   tf_frame_info_free (info);
-  g_autoptr (TfHeader) header = tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
-                                                "CRPIX1  = 256.5\nCRPIX2  = 256.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 4\nCDELT2  = 4\n"
-                                                "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'mT'\nCONTENT = 'MAGNETOGRAM'\n", -1);
+  g_autoptr (TfHeader) header = tf_header_read (
+      "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+      "CRPIX1  = 256.5\nCRPIX2  = 256.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 4\nCDELT2  = 4\n"
+      "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'mT'\nCONTENT = 'MAGNETOGRAM'\n",
+      -1);
   g_autofree char *path = scratch_file ("threads.fits");
-  TfFrameWrite how = { .bitpix = 32, .bscale = 0.01, .blank = G_MININT32, .has_blank = TRUE, .compress = TRUE };
+  TfFrameWrite how
+      = { .bitpix = 32, .bscale = 0.01, .blank = G_MININT32, .has_blank = TRUE, .compress = TRUE };
   g_assert_true (tf_frame_write (path, header, pixels, SIDE, SIDE, &how, NULL));
   g_autoptr (TfFrame) one = tf_frame_open (path, NULL, NULL, NULL);
   g_assert_nonnull (one);
-  tf_check_near ("mT became G", tf_frame_value (one, 250, 250) / (10 * (double)pixels[249 * SIDE + 249]), 1, 1e-2);
+  tf_check_near ("mT became G",
+                 tf_frame_value (one, 250, 250) / (10 * (double)pixels[249 * SIDE + 249]), 1, 1e-2);
   g_autoptr (TfPool) pool = tf_pool_new ();
   for (guint turn = 0; turn < 6; turn++)
     {
@@ -195,20 +213,24 @@ test_same_bits (void)
     }
 }
 
-/* No BLANK, but one value all over the sky: left out there, and on the disk too when no field can be that strong. */
+/* No BLANK, but one value all over the sky: left out there, and on the disk too when no field
+ * can be that strong. */
 static void
 test_fill_off_disk (void)
 {
-  g_autoptr (TfHeader) header = tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
-                                                "CRPIX1  = 64.5\nCRPIX2  = 64.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 20\nCDELT2  = 20\n"
-                                                "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\n", -1);
+  g_autoptr (TfHeader) header = tf_header_read (
+      "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+      "CRPIX1  = 64.5\nCRPIX2  = 64.5\nCRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 20\nCDELT2  = 20\n"
+      "DATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\n",
+      -1);
   static const float fills[] = { -32768, 0, -99 };
   g_autofree float *pixels = g_new (float, 128 * 128);
   for (guint f = 0; f < G_N_ELEMENTS (fills); f++)
     {
       g_autoptr (GRand) chance = g_rand_new_with_seed (3);
       for (int k = 0; k < 128 * 128; k++)
-        pixels[k] = hypot (k % 128 - 63.5, k / 128 - 63.5) < 47.5 ? (float)(10 * normal (chance)) : fills[f];
+        pixels[k] = hypot (k % 128 - 63.5, k / 128 - 63.5) < 47.5 ? (float)(10 * normal (chance))
+                                                                  : fills[f];
       pixels[64 * 128 + 60] = fills[f];
       g_autofree char *path = scratch_file ("fill.fits");
       TfFrameWrite how = { .bitpix = -32 };
@@ -246,7 +268,8 @@ test_correction (void)
   TfFrameInfo *info = disk_info (SIDE, 240, 0);
   g_autofree float *pixels = noisy_disk (&info->geometry, 6, FALSE);
   TfGeometry turned;
-  g_assert_true (tf_geometry_make_disk (&turned, SIDE, SIDE, 250, 260, tf_geometry_scale_arcsec (&info->geometry), 90,
+  g_assert_true (tf_geometry_make_disk (&turned, SIDE, SIDE, 250, 260,
+                                        tf_geometry_scale_arcsec (&info->geometry), 90,
                                         &info->geometry.observer, TF_RADIUS_MM));
   g_autoptr (TfFrame) frame = tf_frame_new (info, pixels, NULL);
   g_autoptr (TfFrame) other = tf_frame_with_geometry (frame, &turned, NULL);
@@ -260,7 +283,8 @@ void
 add_pixel_tests (void)
 {
   g_test_add_func ("/frame/noise/within-5-percent-also-on-an-active-disk", test_noise);
-  g_test_add_func ("/frame/noise/within-5-percent-where-values-are-stored-in-steps", test_stepped_noise);
+  g_test_add_func ("/frame/noise/within-5-percent-where-values-are-stored-in-steps",
+                   test_stepped_noise);
   g_test_add_func ("/frame/noise/correlation-of-smoothed-noise", test_correlation);
   g_test_add_func ("/frame/noise/none-and-nothing", test_no_noise);
   g_test_add_func ("/frame/pyramid/box-means-know-nan-and-edges", test_pyramid);

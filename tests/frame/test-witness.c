@@ -14,10 +14,13 @@
 static TfLimbFit
 fit_of (double cx, double cy, double r, gboolean sky, double damage, TfGeometry *geometry)
 {
-  enum { SIDE = 500 };
+  enum
+  {
+    SIDE = 500
+  };
   g_autoptr (GRand) chance = g_rand_new_with_seed (3);
   g_autoptr (TfFrameInfo) info = disk_info (SIDE, 220, 10);
-  g_autofree float *pixels = g_new (float, SIDE * SIDE);
+  g_autofree float *pixels = g_new (float, SIDE *SIDE);
   for (int k = 0; k < SIDE * SIDE; k++)
     {
       double x = k % SIDE + 1, y = k / SIDE + 1;
@@ -58,7 +61,12 @@ test_limb_judged (void)
   {
     double shift, growth;
     const char *code;
-  } cases[] = { { 0, 0, "" }, { 0.3, 0.2, "" }, { 0.9, 0, "limb-off" }, { 0, -1.5, "limb-off" }, { 6, 0, "header-lies" }, { 0, 8, "header-lies" } };
+  } cases[] = { { 0, 0, "" },
+                { 0.3, 0.2, "" },
+                { 0.9, 0, "limb-off" },
+                { 0, -1.5, "limb-off" },
+                { 6, 0, "header-lies" },
+                { 0, 8, "header-lies" } };
   for (guint k = 0; k < G_N_ELEMENTS (cases); k++)
     {
       g_autoptr (GPtrArray) cautions = tf_notes_new ();
@@ -74,11 +82,15 @@ test_limb_judged (void)
   g_assert_false (tf_limb_fit (pixels, &cut).found);
 }
 
-/* Spots on the sphere, carried by the Sun's rotation, drawn under a true orientation that the header may not tell. */
+/* Spots on the sphere, carried by the Sun's rotation, drawn under a true orientation that the
+ * header may not tell. */
 static TfFrame *
 spotted (double hours, int reading, gboolean far_from_equator)
 {
-  enum { SIDE = 160 };
+  enum
+  {
+    SIDE = 160
+  };
   static const double sign[4][2] = { { 1, 1 }, { -1, -1 }, { -1, 1 }, { 1, -1 } };
   TfFrameInfo *info = disk_info (SIDE, 75, 0);
   g_autoptr (GRand) chance = g_rand_new_with_seed (21), spots = g_rand_new_with_seed (8);
@@ -93,13 +105,14 @@ spotted (double hours, int reading, gboolean far_from_equator)
       lat[k] = g_rand_double_range (spots, -45, 45);
       lon[k] = g_rand_double_range (spots, 40, 190) + tf_rotation_carry (0, lat[k], hours * 3600);
     }
-  g_autofree float *pixels = g_new (float, SIDE * SIDE);
+  g_autofree float *pixels = g_new (float, SIDE *SIDE);
   for (int k = 0; k < SIDE * SIDE; k++)
     {
       double tx, ty, x, y;
       TfPlace p;
       tf_geometry_pixel_to_projective (&info->geometry, k % SIDE + 1, k / SIDE + 1, &tx, &ty);
-      tf_geometry_projective_to_pixel (&info->geometry, sign[reading][0] * tx, sign[reading][1] * ty, &x, &y);
+      tf_geometry_projective_to_pixel (&info->geometry, sign[reading][0] * tx,
+                                       sign[reading][1] * ty, &x, &y);
       if (!tf_geometry_pixel_to_sun (&info->geometry, x, y, &p))
         {
           pixels[k] = NAN;
@@ -119,15 +132,18 @@ spotted (double hours, int reading, gboolean far_from_equator)
 static void
 test_orientation (void)
 {
-  static const TfOrientation expected[4] = { TF_WITNESS_AGREES, TF_WITNESS_TURNED, TF_WITNESS_MIRRORED, TF_WITNESS_MIRRORED };
+  static const TfOrientation expected[4]
+      = { TF_WITNESS_AGREES, TF_WITNESS_TURNED, TF_WITNESS_MIRRORED, TF_WITNESS_MIRRORED };
   for (int reading = 0; reading < 4; reading++)
-    for (double hours = reading < 2 ? 6 : 18; hours < 40; hours += 20) /* row order needs longer paths */
+    for (double hours = reading < 2 ? 6 : 18; hours < 40;
+         hours += 20) /* row order needs longer paths */
       {
         double score[4];
         g_autoptr (TfFrame) a = spotted (0, reading, TRUE), b = spotted (hours, reading, TRUE);
         g_autoptr (TfNote) reason = NULL;
         TfOrientation got = tf_orientation_witness (a, b, score, &reason);
-        g_test_message ("reading %d, %g h: %.2f %.2f %.2f %.2f", reading, hours, score[0], score[1], score[2], score[3]);
+        g_test_message ("reading %d, %g h: %.2f %.2f %.2f %.2f", reading, hours, score[0], score[1],
+                        score[2], score[3]);
         g_assert_cmpint (got, ==, expected[reading]);
         g_assert_null (reason);
       }

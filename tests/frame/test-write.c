@@ -17,12 +17,15 @@ enum
 static TfHeader *
 a_header (void)
 {
-  return tf_header_read ("CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
-                         "CRPIX1  = 30\nCRPIX2  = 20\nCRVAL1  = 100\nCRVAL2  = -50\nCDELT1  = 2\nCDELT2  = 2\nCROTA2  = 10\n"
-                         "DATE-AVG= '2013-10-12T06:00:00'\nDSUN_OBS= 149597870700.0\nHGLN_OBS= 0.0\nHGLT_OBS= 5.0\n"
-                         "CRLN_OBS= 120.0\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\nTELESCOP= 'TEST'\nSIMULATD= T\n"
-                         "NOTE    = 'A text that is so long that it must go on over a second card of the header, and on'\n",
-                         -1);
+  return tf_header_read (
+      "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\n"
+      "CRPIX1  = 30\nCRPIX2  = 20\nCRVAL1  = 100\nCRVAL2  = -50\nCDELT1  = 2\nCDELT2  = 2\nCROTA2  "
+      "= 10\n"
+      "DATE-AVG= '2013-10-12T06:00:00'\nDSUN_OBS= 149597870700.0\nHGLN_OBS= 0.0\nHGLT_OBS= 5.0\n"
+      "CRLN_OBS= 120.0\nBUNIT   = 'G'\nCONTENT = 'MAGNETOGRAM'\nTELESCOP= 'TEST'\nSIMULATD= T\n"
+      "NOTE    = 'A text that is so long that it must go on over a second card of the header, and "
+      "on'\n",
+      -1);
 }
 
 static void
@@ -39,7 +42,8 @@ round_trip (const TfFrameWrite *how, double tolerance)
   float pixels[W * H];
   g_autoptr (GError) error = NULL;
   g_autoptr (TfHeader) header = a_header ();
-  g_autofree char *path = scratch_file ("a [frame](1)+2.fits"); /* CFITSIO would read the brackets as a wish */
+  g_autofree char *path
+      = scratch_file ("a [frame](1)+2.fits"); /* CFITSIO would read the brackets as a wish */
   fill (pixels);
   tf_frame_write (path, header, pixels, W, H, how, &error);
   g_assert_no_error (error);
@@ -49,7 +53,8 @@ round_trip (const TfFrameWrite *how, double tolerance)
   g_assert_cmpuint (tf_frame_get_height (frame), ==, H);
   g_assert_cmpint (tf_frame_get_hdu (frame), ==, how->compress ? 2 : 1);
   g_assert_true (tf_frame_get_info (frame)->simulated);
-  tf_check_near ("the turn", tf_geometry_north_angle (tf_frame_get_geometry (frame)), -10, 1e-4); /* CRVAL is off the centre */
+  tf_check_near ("the turn", tf_geometry_north_angle (tf_frame_get_geometry (frame)), -10,
+                 1e-4); /* CRVAL is off the centre */
   const float *got = tf_frame_get_pixels (frame);
   for (guint k = 0; k < W * H; k++)
     if (isnan (pixels[k]))
@@ -64,11 +69,22 @@ static void
 test_round_trips (void)
 {
   round_trip (&(TfFrameWrite){ .bitpix = -32 }, 0);
-  round_trip (&(TfFrameWrite){ .bitpix = 16, .bscale = 0.1, .blank = -32768, .has_blank = TRUE }, 0.0501);
-  round_trip (&(TfFrameWrite){ .bitpix = 32, .bscale = 0.01, .blank = G_MININT32, .has_blank = TRUE }, 0.00501);
-  round_trip (&(TfFrameWrite){ .bitpix = 32, .bscale = 0.01, .bzero = 3, .blank = G_MININT32, .has_blank = TRUE, .compress = TRUE },
+  round_trip (&(TfFrameWrite){ .bitpix = 16, .bscale = 0.1, .blank = -32768, .has_blank = TRUE },
+              0.0501);
+  round_trip (
+      &(TfFrameWrite){ .bitpix = 32, .bscale = 0.01, .blank = G_MININT32, .has_blank = TRUE },
+      0.00501);
+  round_trip (&(TfFrameWrite){ .bitpix = 32,
+                               .bscale = 0.01,
+                               .bzero = 3,
+                               .blank = G_MININT32,
+                               .has_blank = TRUE,
+                               .compress = TRUE },
               0.00501);
-  round_trip (&(TfFrameWrite){ .bitpix = 16, .bscale = 0.1, .blank = -32768, .has_blank = TRUE, .compress = TRUE }, 0.0501);
+  round_trip (
+      &(TfFrameWrite){
+          .bitpix = 16, .bscale = 0.1, .blank = -32768, .has_blank = TRUE, .compress = TRUE },
+      0.0501);
 }
 
 static void
@@ -79,12 +95,18 @@ test_same_bytes (void)
   fill (pixels);
   for (int compress = 0; compress < 2; compress++)
     {
-      TfFrameWrite how = { .bitpix = 16, .bscale = 0.1, .blank = -32768, .has_blank = TRUE, .no_date = TRUE, .compress = compress };
+      TfFrameWrite how = { .bitpix = 16,
+                           .bscale = 0.1,
+                           .blank = -32768,
+                           .has_blank = TRUE,
+                           .no_date = TRUE,
+                           .compress = compress };
       g_autofree char *one = scratch_file ("one.fits"), *two = scratch_file ("two.fits");
       g_assert_true (tf_frame_write (one, header, pixels, W, H, &how, NULL));
       g_usleep (1100000 * (compress == 0)); /* over a second: no clock may get in */
       g_assert_true (tf_frame_write (two, header, pixels, W, H, &how, NULL));
-      g_autofree char *a = tf_frame_file_checksum (one, NULL, NULL), *b = tf_frame_file_checksum (two, NULL, NULL);
+      g_autofree char *a = tf_frame_file_checksum (one, NULL, NULL),
+                      *b = tf_frame_file_checksum (two, NULL, NULL);
       g_assert_nonnull (a);
       g_assert_cmpstr (a, ==, b);
     }

@@ -2,9 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Small FITS files, mutated from a seed, into tf_frame_open: a frame or one sentence, no crash, no great memory.
- * Usage: fuzz-frame-files [MUTATIONS [SEED]]. The corpus is written by the program itself (plain and compressed, 16 and
- * 32 bits and floats); the conformance and broken files of the real data are added where they are there. */
+/* Small FITS files, mutated from a seed, into tf_frame_open: a frame or one sentence, no crash,
+ * no great memory. Usage: fuzz-frame-files [MUTATIONS [SEED]]. The corpus is written by the
+ * program itself (plain and compressed, 16 and 32 bits and floats); the conformance and broken
+ * files of the real data are added where they are there. */
 
 #include <glib.h>
 #include <glib/gstdio.h>
@@ -24,9 +25,10 @@ enum
   LARGEST = 200000, /* bytes of a real file that is mutated */
 };
 
-static const char header_text[]
-    = "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = 'arcsec'\nCUNIT2  = 'arcsec'\nCRPIX1  = 20.5\nCRPIX2  = 20.5\n"
-      "CRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 60\nCDELT2  = 60\nCROTA2  = 10\nDATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\n";
+static const char header_text[] = "CTYPE1  = 'HPLN-TAN'\nCTYPE2  = 'HPLT-TAN'\nCUNIT1  = "
+                                  "'arcsec'\nCUNIT2  = 'arcsec'\nCRPIX1  = 20.5\nCRPIX2  = 20.5\n"
+                                  "CRVAL1  = 0\nCRVAL2  = 0\nCDELT1  = 60\nCDELT2  = 60\nCROTA2  = "
+                                  "10\nDATE-AVG= '2013-10-12T06:00:00'\nBUNIT   = 'G'\n";
 
 static GBytes *
 sample (const char *path, const TfFrameWrite *how)
@@ -37,8 +39,11 @@ sample (const char *path, const TfFrameWrite *how)
   g_autoptr (TfHeader) header = tf_header_read (header_text, -1);
   g_autoptr (GRand) chance = g_rand_new_with_seed (1);
   for (int k = 0; k < SIDE * SIDE; k++)
-    pixels[k] = hypot (k % SIDE - 19.5, k / SIDE - 19.5) < 16 ? (float)g_rand_double_range (chance, -100, 100) : NAN;
-  if (!tf_frame_write (path, header, pixels, SIDE, SIDE, how, NULL) || !g_file_get_contents (path, &bytes, &n, NULL))
+    pixels[k] = hypot (k % SIDE - 19.5, k / SIDE - 19.5) < 16
+                    ? (float)g_rand_double_range (chance, -100, 100)
+                    : NAN;
+  if (!tf_frame_write (path, header, pixels, SIDE, SIDE, how, NULL)
+      || !g_file_get_contents (path, &bytes, &n, NULL))
     abort ();
   return g_bytes_new_take (bytes, n);
 }
@@ -77,7 +82,8 @@ mutate (GBytes *source, GRand *chance)
         g_byte_array_set_size (out, (guint)g_rand_int_range (chance, 1, (gint)out->len));
         break;
       case 1:
-        g_byte_array_remove_range (out, (guint)g_rand_int_range (chance, 0, (gint)(out->len / 2880)) * 2880, 2880);
+        g_byte_array_remove_range (
+            out, (guint)g_rand_int_range (chance, 0, (gint)(out->len / 2880)) * 2880, 2880);
         break;
       case 2:
         fuzz_flip (out, chance, 30);
@@ -106,7 +112,8 @@ judge (const char *path, const guint8 *data, gsize n)
   g_autoptr (TfFrame) frame = tf_frame_open (path, NULL, NULL, &error);
   gboolean good = (frame != NULL) != (error != NULL);
   if (error != NULL)
-    good &= error->domain == TF_FRAME_ERROR && strchr (error->message, '\n') == NULL && g_utf8_validate (error->message, -1, NULL);
+    good &= error->domain == TF_FRAME_ERROR && strchr (error->message, '\n') == NULL
+            && g_utf8_validate (error->message, -1, NULL);
   else
     good &= tf_frame_get_width (frame) > 0 && tf_frame_get_info (frame)->role == TF_ROLE_FIELD;
   if (!good)
@@ -122,7 +129,8 @@ main (int argc, char **argv)
   guint n = argc > 1 ? (guint)g_ascii_strtoull (argv[1], NULL, 10) : 300, opened = 0;
   guint32 seed = argc > 2 ? (guint32)g_ascii_strtoull (argv[2], NULL, 10) : 20131012;
   g_autoptr (GRand) chance = g_rand_new_with_seed (seed);
-  g_autofree char *folder = g_dir_make_tmp ("tf-fuzz-XXXXXX", NULL), *path = g_build_filename (folder, "frame.fits", NULL);
+  g_autofree char *folder = g_dir_make_tmp ("tf-fuzz-XXXXXX", NULL),
+                  *path = g_build_filename (folder, "frame.fits", NULL);
   g_autoptr (GPtrArray) corpus = make_corpus (path);
   guint own = 5;
   for (guint k = 0; k < corpus->len; k++)
@@ -135,12 +143,14 @@ main (int argc, char **argv)
   for (guint k = 0; k < n; k++)
     {
       /* two of three from the program's own files, which a change can still leave readable */
-      guint which = k % 3 > 0 ? corpus->len - 1 - k % own : (guint)g_rand_int_range (chance, 0, (gint)corpus->len);
+      guint which = k % 3 > 0 ? corpus->len - 1 - k % own
+                              : (guint)g_rand_int_range (chance, 0, (gint)corpus->len);
       if (g_bytes_get_size (corpus->pdata[which]) > LARGEST)
         which = corpus->len - 1;
       g_autoptr (GByteArray) bytes = mutate (corpus->pdata[which], chance);
       if (g_getenv ("TF_FUZZ_KEEP") != NULL)
-        g_file_set_contents (g_getenv ("TF_FUZZ_KEEP"), (const char *)bytes->data, bytes->len, NULL);
+        g_file_set_contents (g_getenv ("TF_FUZZ_KEEP"), (const char *)bytes->data, bytes->len,
+                             NULL);
       judge (path, bytes->data, bytes->len);
       g_autoptr (TfFrame) frame = tf_frame_open (path, NULL, NULL, NULL);
       opened += frame != NULL;
@@ -149,7 +159,8 @@ main (int argc, char **argv)
   struct rusage usage;
   getrusage (RUSAGE_SELF, &usage);
   gboolean small = usage.ru_maxrss < 700 * 1024;
-  printf ("%s 3 - memory stayed small: %ld MB at most\n1..3\n", small ? "ok" : "not ok", usage.ru_maxrss / 1024);
+  printf ("%s 3 - memory stayed small: %ld MB at most\n1..3\n", small ? "ok" : "not ok",
+          usage.ru_maxrss / 1024);
   g_remove (path);
   g_rmdir (folder);
   return small && opened > 0 ? 0 : 1;

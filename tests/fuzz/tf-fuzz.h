@@ -8,13 +8,16 @@
 #include <glib.h>
 #include <string.h>
 
-/** fuzz_read_folder: (transfer full): GBytes of every file of a folder of the real data; empty where it is absent. */
+/** fuzz_read_folder: (transfer full): GBytes of every file of a folder of the real data; empty
+ * where it is absent. */
 static inline GPtrArray *
 fuzz_read_folder (const char *name)
 {
   GPtrArray *found = g_ptr_array_new_with_free_func ((GDestroyNotify)g_bytes_unref);
   const char *set = g_getenv ("TF_SHARED_DATA");
-  g_autofree char *top = set != NULL ? g_strdup (set) : g_build_filename (TF_SOURCE_ROOT, "..", "shared", "data", NULL);
+  g_autofree char *top = set != NULL
+                             ? g_strdup (set)
+                             : g_build_filename (TF_SOURCE_ROOT, "..", "shared", "data", NULL);
   g_autofree char *folder = g_build_filename (top, name, NULL);
   g_autoptr (GDir) dir = g_dir_open (folder, 0, NULL);
   g_autoptr (GPtrArray) names = g_ptr_array_new_with_free_func (g_free);
@@ -36,15 +39,19 @@ static inline void
 fuzz_flip (GByteArray *bytes, GRand *chance, guint most)
 {
   for (gint k = g_rand_int_range (chance, 1, (gint)most + 1); k > 0 && bytes->len > 0; k--)
-    bytes->data[g_rand_int_range (chance, 0, (gint)bytes->len)] = (guint8)g_rand_int_range (chance, 0, 256);
+    bytes->data[g_rand_int_range (chance, 0, (gint)bytes->len)]
+        = (guint8)g_rand_int_range (chance, 0, 256);
 }
 
-/** fuzz_mutate_text: lines dropped, doubled and swapped, numbers replaced by awkward ones, bytes changed, an end cut off. */
+/** fuzz_mutate_text: lines dropped, doubled and swapped, numbers replaced by awkward ones, bytes
+ * changed, an end cut off. */
 static inline GByteArray *
 fuzz_mutate_text (GBytes *source, GRand *chance)
 {
-  static const char *const awkward[] = { "0",    "-1",  "1E308", "-1E308", "nan",  "inf",  "1E-320", "99999999999999999999", "''",
-                                         "'N/A'", "T",  "-0.0",  "360",    "90.0", "1e9",  "2.5e-7", "'2013-02-30T25:61:61'", "'\xc3\xa9'" };
+  static const char *const awkward[] = {
+    "0",     "-1", "1E308", "-1E308", "nan",  "inf", "1E-320", "99999999999999999999",  "''",
+    "'N/A'", "T",  "-0.0",  "360",    "90.0", "1e9", "2.5e-7", "'2013-02-30T25:61:61'", "'\xc3\xa9'"
+  };
   gsize n = 0;
   const char *text = g_bytes_get_data (source, &n);
   g_autofree char *copy = g_strndup (text, n);
@@ -55,13 +62,15 @@ fuzz_mutate_text (GBytes *source, GRand *chance)
   for (guint k = 0; k < count; k++)
     {
       gint what = g_rand_int_range (chance, 0, odds * 3);
-      const char *line = what == 1 ? lines[g_rand_int_range (chance, 0, (gint)count)] : lines[k], *equals = strchr (line, '=');
+      const char *line = what == 1 ? lines[g_rand_int_range (chance, 0, (gint)count)] : lines[k],
+                 *equals = strchr (line, '=');
       g_autofree char *changed = NULL;
       if (what == 0)
         continue;
       if ((what == 2 || what == 3) && equals != NULL)
-        line = changed = g_strdup_printf ("%.*s= %s", (int)(equals - line), line,
-                                          awkward[g_rand_int_range (chance, 0, G_N_ELEMENTS (awkward))]);
+        line = changed
+            = g_strdup_printf ("%.*s= %s", (int)(equals - line), line,
+                               awkward[g_rand_int_range (chance, 0, G_N_ELEMENTS (awkward))]);
       for (int turn = what == 4 ? 2 : 1; turn > 0; turn--)
         {
           g_byte_array_append (out, (const guint8 *)line, (guint)strlen (line));

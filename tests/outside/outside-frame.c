@@ -2,8 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Prints, for every file named, where its pixels lie, as CSV, for frame.py to compare with other people's libraries.
- * Headers as text end in .header or .hdr; celestial ones of the WCS papers are read as if they were of the Sun. */
+/* Prints, for every file named, where its pixels lie, as CSV, for frame.py to compare with other
+ * people's libraries.
+ * Headers as text end in .header or .hdr; celestial ones of the WCS papers are read as if they
+ * were of the Sun. */
 
 #include <glib.h>
 #include <math.h>
@@ -17,7 +19,8 @@ enum
   ACROSS = 9
 };
 
-/* RA/DEC to helioprojective or Carrington words, so that the same projections are read; oblique maps, which are refused,
+/* RA/DEC to helioprojective or Carrington words, so that the same projections are read; oblique
+ * maps, which are refused,
  * are made straight. */
 static void
 of_the_sun (TfHeader *header)
@@ -50,7 +53,8 @@ read_text (const char *path)
     return NULL;
   g_autoptr (TfHeader) header = tf_header_read (text, (gssize)n);
   of_the_sun (header);
-  return tf_frame_info_read (header, (guint)tf_header_int (header, "NAXIS1", 0), (guint)tf_header_int (header, "NAXIS2", 0));
+  return tf_frame_info_read (header, (guint)tf_header_int (header, "NAXIS1", 0),
+                             (guint)tf_header_int (header, "NAXIS2", 0));
 }
 
 static void
@@ -61,14 +65,15 @@ print (const char *name, const TfFrameInfo *info)
     return;
   for (int k = 0; k < ACROSS * ACROSS; k++)
     {
-      double x = 1 + (g->width - 1.0) * (k % ACROSS) / (ACROSS - 1.0), y = 1 + (g->height - 1.0) * (k / ACROSS) / (ACROSS - 1.0);
+      double x = 1 + (g->width - 1.0) * (k % ACROSS) / (ACROSS - 1.0),
+             y = 1 + (g->height - 1.0) * (k / ACROSS) / (ACROSS - 1.0);
       double tx = NAN, ty = NAN;
       TfPlace p;
       if (!tf_geometry_is_map (g))
         tf_geometry_pixel_to_projective (g, x, y, &tx, &ty);
       tf_geometry_pixel_to_sun (g, x, y, &p);
-      printf ("%s,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", name, x, y, tx, ty, p.stonyhurst_lon_deg,
-              p.carrington_lon_deg, p.lat_deg, p.mu);
+      printf ("%s,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g,%.17g\n", name, x, y, tx, ty,
+              p.stonyhurst_lon_deg, p.carrington_lon_deg, p.lat_deg, p.mu);
     }
 }
 
@@ -79,7 +84,8 @@ main (int argc, char **argv)
   for (int k = 1; k < argc; k++)
     {
       gboolean text = g_str_has_suffix (argv[k], ".header") || g_str_has_suffix (argv[k], ".hdr");
-      g_autoptr (TfFrameInfo) info = text ? read_text (argv[k]) : tf_frame_look (argv[k], NULL, NULL, NULL);
+      g_autoptr (TfFrameInfo) info
+          = text ? read_text (argv[k]) : tf_frame_look (argv[k], NULL, NULL, NULL);
       g_autofree char *name = g_path_get_basename (argv[k]);
       if (info != NULL)
         print (name, info);
