@@ -261,6 +261,34 @@ test_cancel (void)
   g_assert_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_CANCELLED);
 }
 
+/* Many threads at once, each with its own turn: wcslib's parser and CFITSIO's handles do not mix
+ * them up. */
+static gpointer
+open_many (gpointer data)
+{
+  guint wrong = 0;
+  for (int k = 0; k < 60; k++)
+    {
+      double turn = (GPOINTER_TO_INT (data) * 37 + k * 11) % 180 - 90;
+      g_autoptr (TfFrameInfo) info = disk_info (100, 40, turn);
+      wrong += !(fabs (tf_geometry_north_angle (&info->geometry) - turn) < 1e-5);
+      g_autofree char *path = scratch_file ("threads.fits");
+      g_autoptr (TfFrame) frame = k % 6 == 0 ? tf_frame_open (path, NULL, NULL, NULL) : NULL;
+      wrong += k % 6 == 0 && (frame == NULL || isnan (tf_frame_value (frame, 250, 250)));
+    }
+  return GUINT_TO_POINTER (wrong);
+}
+
+static void
+test_many_threads (void)
+{
+  GThread *threads[4];
+  for (int k = 0; k < 4; k++)
+    threads[k] = g_thread_new (NULL, open_many, GINT_TO_POINTER (k));
+  for (int k = 0; k < 4; k++)
+    g_assert_cmpuint (GPOINTER_TO_UINT (g_thread_join (threads[k])), ==, 0);
+}
+
 /* A corrected geometry: same pixels, noise by the new rings; the first frame is as it was. */
 static void
 test_correction (void)
@@ -290,6 +318,7 @@ add_pixel_tests (void)
   g_test_add_func ("/frame/pyramid/box-means-know-nan-and-edges", test_pyramid);
   g_test_add_func ("/frame/open/threads-and-pool-give-the-same-bits", test_same_bits);
   g_test_add_func ("/frame/open/a-fill-off-the-disk-is-left-out", test_fill_off_disk);
+  g_test_add_func ("/frame/open/many-threads-at-once", test_many_threads);
   g_test_add_func ("/frame/open/is-cancelled", test_cancel);
   g_test_add_func ("/frame/open/a-corrected-geometry", test_correction);
 }
