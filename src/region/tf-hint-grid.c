@@ -5,7 +5,6 @@
 /* The working grid of the hints: one pass over the pixels, a Gaussian, the noise of what comes out. */
 
 #include <math.h>
-#include <stdlib.h>
 #include <string.h>
 
 #include "tf-constants.h"
@@ -33,7 +32,7 @@ typedef struct
   guint width, height;
   double scale;
   gboolean radial;
-  float *flux, *area; /* STRIPES times n x n */
+  float *sums; /* STRIPES times n x n of flux, then of area */
 } Pass;
 
 static double
@@ -69,11 +68,14 @@ do_stripe (guint band, guint first, guint n, guint worker, gpointer data)
 {
   const Pass *pass = data;
   gsize cells = (gsize)pass->grid->n * pass->grid->n;
+  float *flux = pass->sums + band * cells, *covered = pass->sums + (STRIPES + band) * cells;
   double (*unit)[3] = g_malloc_n (pass->width, sizeof *unit);
   g_autofree double *mu = g_new (double, pass->width), *area = g_new (double, pass->width);
   guint from = pass->height * band / STRIPES, to = pass->height * (band + 1) / STRIPES;
+  memset (flux, 0, cells * sizeof *flux);
+  memset (covered, 0, cells * sizeof *covered);
   for (guint y = from; y < to; y++)
-    add_row (pass, y, unit, mu, area, pass->flux + band * cells, pass->area + band * cells);
+    add_row (pass, y, unit, mu, area, flux, covered);
   g_free (unit);
 }
 
@@ -110,6 +112,13 @@ add_stripes (float *sums, gsize cells)
       sums[k] += sums[s * cells + k];
 }
 
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+add_times (float *restrict to, const float *restrict from, float c, gsize n)
+{
+  for (gsize x = 0; x < n; x++)
+    to[x] += c * from[x];
+}
+
 void
 tf_hint_blur (float *values, float *room, guint width, guint height, double sigma)
 {
@@ -125,20 +134,15 @@ tf_hint_blur (float *values, float *room, guint width, guint height, double sigm
   for (int y = 0; y < (int)height; y++)
     for (int k = -reach; k <= reach; k++)
       {
-        const float *row = values + (gsize)y * width;
-        float *to = room + (gsize)y * width, c = kernel[k + reach];
-        for (int x = MAX (0, -k); x < MIN ((int)width, (int)width - k); x++)
-          to[x] += c * row[x + k];
+        int first = MAX (0, -k), last = MIN ((int)width, (int)width - k);
+        gsize at = (gsize)y * width;
+        if (first < last)
+          add_times (room + at + first, values + at + first + k, kernel[k + reach], (gsize)(last - first));
       }
   memset (values, 0, (gsize)width * height * sizeof *values);
   for (int y = 0; y < (int)height; y++)
     for (int k = MAX (-reach, -y); k <= MIN (reach, (int)height - 1 - y); k++)
-      {
-        const float *row = room + (gsize)(y + k) * width;
-        float *to = values + (gsize)y * width, c = kernel[k + reach];
-        for (guint x = 0; x < width; x++)
-          to[x] += c * row[x];
-      }
+      add_times (values + (gsize)y * width, room + (gsize)(y + k) * width, kernel[k + reach], width);
 }
 
 void
@@ -176,11 +180,26 @@ divide (TfHintGrid *g, float *flux, float *area)
 
 /* -- noise ------------------------------------------------------------------------------------------------- */
 
-static gint
-compare (gconstpointer a, gconstpointer b)
+/* Values >= 0: their bits as integers have the same order. Radix sort, three passes of 11 bits. */
+static void
+sort_sizes (float *values, guint n)
 {
-  float x = *(const float *)a, y = *(const float *)b;
-  return (x > y) - (x < y);
+  g_autofree guint32 *keys = g_new (guint32, MAX (n, 1)), *other = g_new (guint32, MAX (n, 1));
+  memcpy (keys, values, n * sizeof *values);
+  for (guint shift = 0; shift < 33; shift += 11)
+    {
+      guint start[2049] = { 0 };
+      for (guint k = 0; k < n; k++)
+        start[((keys[k] >> shift) & 2047) + 1]++;
+      for (guint b = 0; b < 2048; b++)
+        start[b + 1] += start[b];
+      for (guint k = 0; k < n; k++)
+        other[start[(keys[k] >> shift) & 2047]++] = keys[k];
+      guint32 *swap = keys;
+      keys = other;
+      other = swap;
+    }
+  memcpy (values, keys, n * sizeof *values);
 }
 
 /* 1.4826 MAD about 0, clipped at 3 sigma until it stands. */
@@ -190,7 +209,7 @@ clipped_mad (GArray *sizes)
   float *v = (float *)(void *)sizes->data;
   guint n = sizes->len;
   double sigma = NAN;
-  qsort (v, n, sizeof *v, compare);
+  sort_sizes (v, n);
   for (guint pass = 0; pass < CLIPS && n > 0; pass++)
     {
       sigma = 1.4826 * v[n / 2];
@@ -289,24 +308,25 @@ tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale
   gsize cells = (gsize)g->n * g->n;
   Pass pass = { .grid = g, .scale = scale, .radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL };
   choose_level (&pass, frame, params->cell_mm);
-  pass.flux = g_new0 (float, STRIPES * cells);
-  pass.area = g_new0 (float, STRIPES * cells);
+  g_autoptr (TfPixels) room = tf_pixels_new (work != NULL ? work->pool : NULL, 2 * STRIPES * cells);
+  if (room == NULL)
+    return g_free (g), NULL;
+  pass.sums = tf_pixels_get (room);
+  float *flux = pass.sums, *area = pass.sums + STRIPES * cells;
   g->field = g_new (float, cells);
   g->mu = g_new (float, cells);
   g->low = g_new (float, cells);
   g->high = g_new (float, cells);
   gboolean done = tf_bands_run (work, STRIPES * TF_BAND_ROWS, do_stripe, &pass);
-  add_stripes (pass.flux, cells);
-  add_stripes (pass.area, cells);
-  fill_mu (g, geometry);
-  tf_hint_blur (pass.flux, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
-  tf_hint_blur (pass.area, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
-  divide (g, pass.flux, pass.area);
-  fill_levels (g, params);
-  g_free (pass.flux);
-  g_free (pass.area);
   if (!done)
-    g_clear_pointer (&g, tf_hint_grid_free);
+    return tf_hint_grid_free (g), NULL;
+  add_stripes (flux, cells);
+  add_stripes (area, cells);
+  fill_mu (g, geometry);
+  tf_hint_blur (flux, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
+  tf_hint_blur (area, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
+  divide (g, flux, area);
+  fill_levels (g, params);
   return g;
 }
 

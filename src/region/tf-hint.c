@@ -86,27 +86,9 @@ is_offered (const TfHintCluster *cluster, const TfHintParams *p, double radius_m
   return total >= SMALL_MX || (weaker >= SMALL_WEAKER && tf_hint_separation (cluster, radius_mm) <= SMALL_LENGTH_MM);
 }
 
-/* Does the western pole change its sign when the floor moves? */
-static gboolean
-leader_flips (const TfHint *hint, const TfFrame *frame, const TfMeasureParams *measure)
-{
-  for (int step = -1; step <= 1; step += 2)
-    {
-      TfMeasureParams p = *measure;
-      g_auto (TfMeasure) m = { 0 };
-      p.outline_term = FALSE;
-      p.realisations = 0;
-      p.floor_gauss = hint->measure.floor_gauss * (1.0 + step * measure->floor_step);
-      if (tf_measure_region (&m, frame, hint->outline, &p, NULL)
-          && m.leading_polarity != hint->measure.leading_polarity)
-        return TRUE;
-    }
-  return FALSE;
-}
-
 static void
-add_cautions (TfHint *hint, const TfFrame *frame, const TfHintPieces *pieces, const TfHintCluster *cluster,
-              gboolean edge, const TfMeasureParams *measure)
+add_cautions (TfHint *hint, const TfHintPieces *pieces, const TfHintCluster *cluster, gboolean edge,
+              const TfMeasureParams *measure)
 {
   double total = tf_hint_total (cluster), length = tf_hint_length (total);
   double separation = tf_hint_separation (cluster, pieces->grid->radius_mm);
@@ -122,7 +104,7 @@ add_cautions (TfHint *hint, const TfFrame *frame, const TfHintPieces *pieces, co
     tf_notes_add (hint->cautions, "hint-at-edge", "");
   if (pieces->grid->active)
     tf_notes_add (hint->cautions, "hint-active-frame", "d", pieces->params->low_gauss);
-  if (!hint->unipolar && leader_flips (hint, frame, measure))
+  if (!hint->unipolar && hint->measure.leader_flips)
     tf_notes_add (hint->cautions, "hint-leader-flips", "d", 100.0 * measure->floor_step);
 }
 
@@ -144,7 +126,7 @@ make_hint (const TfFrame *frame, const TfHintPieces *pieces, guint k, const TfMe
       tf_hint_free (hint);
       return NULL;
     }
-  add_cautions (hint, frame, pieces, cluster, edge, measure);
+  add_cautions (hint, pieces, cluster, edge, measure);
   return hint;
 }
 
@@ -174,12 +156,46 @@ check_kind (const TfFrame *frame, GError **error)
   return FALSE;
 }
 
+/* What the threads share; every cluster has its own place in @hints. */
+typedef struct
+{
+  const TfFrame *frame;
+  const TfHintPieces *pieces;
+  const TfMeasureParams *measure;
+  TfHint **hints;
+} Search;
+
+/* A "band" of the pool is one cluster here. */
+static void
+try_cluster (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  const Search *search = data;
+  if (tf_hint_root (search->pieces, band) == band)
+    search->hints[band] = make_hint (search->frame, search->pieces, band, search->measure);
+}
+
+static GPtrArray *
+gather (Search *search, const TfWork *work, GError **error)
+{
+  guint n = search->pieces->clusters->len;
+  g_autoptr (GPtrArray) hints = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_hint_free);
+  g_autofree TfHint **found = g_new0 (TfHint *, MAX (n, 1));
+  search->hints = found;
+  gboolean done = tf_bands_run (work, n * TF_BAND_ROWS, try_cluster, search);
+  for (guint k = 0; k < n; k++)
+    if (found[k] != NULL)
+      g_ptr_array_add (hints, found[k]);
+  if (!done)
+    return set_cancelled (error), NULL;
+  g_ptr_array_sort (hints, by_flux);
+  return g_steal_pointer (&hints);
+}
+
 GPtrArray *
 tf_hints_find (const TfFrame *frame, const TfHintParams *params, const TfMeasureParams *measure, const TfWork *work,
                GError **error)
 {
   g_return_val_if_fail (frame != NULL && params != NULL && measure != NULL, NULL);
-  const TfCancel *cancel = work != NULL ? work->cancel : NULL;
   if (!check_kind (frame, error))
     return NULL;
   double scale = isnan (measure->scale) ? 1.0 : measure->scale;
@@ -187,18 +203,7 @@ tf_hints_find (const TfFrame *frame, const TfHintParams *params, const TfMeasure
   if (grid == NULL)
     return set_cancelled (error), NULL;
   g_autoptr (TfHintPieces) pieces = tf_hint_pieces_new (grid, params);
-  g_autoptr (GPtrArray) hints = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_hint_free);
   tf_hint_join (pieces);
-  for (guint k = 0; k < pieces->clusters->len; k++)
-    {
-      if (tf_cancel_is_raised (cancel))
-        return set_cancelled (error), NULL;
-      if (tf_hint_root (pieces, k) != k)
-        continue;
-      TfHint *hint = make_hint (frame, pieces, k, measure);
-      if (hint != NULL)
-        g_ptr_array_add (hints, hint);
-    }
-  g_ptr_array_sort (hints, by_flux);
-  return g_steal_pointer (&hints);
+  Search search = { frame, pieces, measure, NULL };
+  return gather (&search, work, error);
 }

@@ -231,7 +231,7 @@ half (double up, double down)
   return sqrt (0.5 * (up * up + down * down));
 }
 
-void
+gboolean
 tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
                       const TfOutline *outline, TfSpread *spread)
 {
@@ -252,4 +252,5 @@ tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const 
   spread->separation = half (up.separation, down.separation);
   spread->dx = half (up.dx, down.dx);
   spread->dipole = half (up.dipole, down.dipole);
+  return low.west != axis->west || high.west != axis->west;
 }

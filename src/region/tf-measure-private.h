@@ -114,8 +114,9 @@ void tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline
 float *tf_region_smooth (const TfRegionSamples *samples, double *rest);
 
 /* tf-measure-outline.c */
-void tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
-                           const TfOutline *outline, TfSpread *spread);
+/** tf_region_floor_term: Returns: whether the western pole is another at one of the floors. */
+gboolean tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
+                               const TfOutline *outline, TfSpread *spread);
 void tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
                              const TfPotential *potential, TfSpread *spread);
 

@@ -180,7 +180,7 @@ find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const Tf
   tf_region_noise (samples, axis, sine_mean (sums->at[TF_LEVEL_BASE]), &terms->noise, &m->noise_flux_mx);
   if (p->realisations > 1)
     tf_region_realise (samples, outline, &terms->noise);
-  tf_region_floor_term (samples, sums, axis, outline, &terms->floor);
+  m->leader_flips = tf_region_floor_term (samples, sums, axis, outline, &terms->floor);
   if (p->outline_term && outline != NULL)
     tf_region_outline_term (samples->frame, outline, p, potential, &terms->outline);
 }

@@ -103,6 +103,7 @@ typedef struct
   TfPole positive, negative;
   int leading_polarity;  /* 1, -1; 0 without two poles */
   gboolean leading_sure;
+  gboolean leader_flips; /* the western pole is another with the floor at 1 +- floor_step; not kept in the ledger */
   int witnesses[3];      /* 1, -1, 0 undecided, TF_WITNESS_ABSENT */
   double lat_deg, carrington_lon_deg, stonyhurst_lon_deg, cmd_deg, mu; /* midpoint of the poles, or the one pole's place */
   double axis_bearing_deg, axis_tilt_deg;
