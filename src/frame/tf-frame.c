@@ -37,7 +37,7 @@ tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hd
   const TfGeometry *g = &info->geometry;
   frame->n_levels = tf_pyramid_make (values, g->width, g->height, work, frame->levels);
   if (info->role != TF_ROLE_INTENSITY)
-    tf_noise_measure (values, g, &frame->noise);
+    tf_noise_measure (values, g, work, &frame->noise);
   return frame;
 }
 
@@ -76,7 +76,7 @@ tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const 
     }
   other->noise.correlation = 1;
   if (other->info->role != TF_ROLE_INTENSITY)
-    tf_noise_measure (tf_pixels_get (other->pixels), geometry, &other->noise);
+    tf_noise_measure (tf_pixels_get (other->pixels), geometry, work, &other->noise);
   return other;
 }
 

@@ -10,16 +10,15 @@
  * within CLIP sigma": reached from below, so that the many pixels of an active disk that are
  * not noise never enter. CORE is that median for a normal distribution cut at CLIP: 2 Phi
  * (CORE) - 1 = (2 Phi (CLIP) - 1) / 2. */
-#define CLIP 2.5
+#define CLIP TF_NOISE_CLIP
 #define CORE 0.66475116
 
 enum
 {
-  WANTED = 300000,   /* pixels looked at for sigma */
-  LOOKED_AT = 50000, /* and for the correlation */
-  FEWEST = 60,       /* pixels that make a ring */
-  REACH = 4,         /* longest lag of the autocorrelation, pixels */
+  WANTED = 300000, /* pixels looked at for sigma */
+  FEWEST = 60,     /* pixels that make a ring */
   TURNS = 60,
+  PARTS = 8,       /* of the rows, shared out to threads */
 };
 
 /* -- sorting and medians --------------------------------------------------------------------- */
@@ -162,11 +161,23 @@ core_sigma (const float *sorted, gsize n)
 
 /* -- rings ----------------------------------------------------------------------------------- */
 
+/* Rows are shared out to threads in parts, each with its own lists, which are put one behind the
+ * other: the same for any number of threads. */
 typedef struct
 {
   GArray *values[TF_NOISE_RINGS]; /* of float */
   double sum[TF_NOISE_RINGS];     /* of mu or |latitude| */
 } Rings;
+
+typedef struct
+{
+  const float *pixels;
+  const TfGeometry *g;
+  guint step;
+  Rings parts[PARTS];
+  TfNoiseRing judged[TF_NOISE_RINGS];
+  gboolean good[TF_NOISE_RINGS];
+} Sample;
 
 static void
 rings_add (Rings *rings, double place, double share, float value)
@@ -178,44 +189,78 @@ rings_add (Rings *rings, double place, double share, float value)
   rings->sum[k] += place;
 }
 
-/* Every @step-th pixel of every @step-th row, each row begun one further so that no column is
- * favoured. */
+/* Row @row of the sample is every @step-th pixel of the frame's row @y, each row begun one further
+ * so that no column is favoured. */
 static void
-rings_fill (Rings *rings, const float *pixels, const TfGeometry *g, guint step)
+rings_add_row (Rings *rings, const Sample *sample, guint row, guint y, float *mu)
 {
+  const TfGeometry *g = sample->g;
   gboolean map = tf_geometry_is_map (g), disk = g->projection == TF_PROJECTION_TAN;
-  g_autofree float *mu = g_new (float, g->width);
-  for (guint y = step / 2, row = 0; y < g->height; y += step, row++)
+  const float *line = sample->pixels + (gsize)y * g->width;
+  TfPlace place = { 0 };
+  if (map && !tf_geometry_pixel_to_sun (g, 0.5 * (g->width + 1), y + 1.0, &place))
+    return;
+  if (disk)
+    tf_geometry_row_mu (g, y + 1.0, 1, g->width, mu);
+  for (guint x = row % sample->step; x < g->width; x += sample->step)
+    if (map)
+      rings_add (rings, fabs (place.lat_deg), fabs (place.lat_deg) / 90, line[x]);
+    else
+      rings_add (rings, disk ? (double)mu[x] : 1, disk ? (double)mu[x] : 1, line[x]);
+}
+
+/* A "band" of the pool is a part here. */
+static void
+fill_part (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  Sample *sample = data;
+  Rings *rings = &sample->parts[band];
+  guint step = sample->step, height = sample->g->height;
+  guint rows = height > step / 2 ? (height - step / 2 - 1) / step + 1 : 0;
+  g_autofree float *mu = g_new (float, sample->g->width);
+  for (guint k = 0; k < TF_NOISE_RINGS; k++)
+    rings->values[k] = g_array_new (FALSE, FALSE, sizeof (float));
+  for (guint row = rows * band / PARTS; row < rows * (band + 1) / PARTS; row++)
+    rings_add_row (rings, sample, row, step / 2 + row * step, mu);
+}
+
+/* And a ring here. */
+static void
+judge_ring (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  Sample *sample = data;
+  double sum = 0;
+  g_autoptr (GArray) values = g_array_new (FALSE, FALSE, sizeof (float));
+  for (guint k = 0; k < PARTS; k++)
     {
-      TfPlace place = { 0 };
-      if (map && !tf_geometry_pixel_to_sun (g, 0.5 * (g->width + 1), y + 1.0, &place))
-        continue;
-      if (disk)
-        tf_geometry_row_mu (g, y + 1.0, 1, g->width, mu);
-      const float *line = pixels + (gsize)y * g->width;
-      for (guint x = row % step; x < g->width; x += step)
-        if (map)
-          rings_add (rings, fabs (place.lat_deg), fabs (place.lat_deg) / 90, line[x]);
-        else
-          rings_add (rings, disk ? (double)mu[x] : 1, disk ? (double)mu[x] : 1, line[x]);
+      const GArray *part = sample->parts[k].values[band];
+      if (part->len > 0)
+        g_array_append_vals (values, part->data, part->len);
+      sum += sample->parts[k].sum[band];
     }
+  sample->good[band] = values->len >= FEWEST;
+  if (!sample->good[band])
+    return;
+  float *sorted = (float *)(void *)values->data;
+  sort_floats (sorted, values->len);
+  double step = spread_steps (sorted, values->len), sigma = core_sigma (sorted, values->len);
+  sigma = sqrt (MAX (sigma * sigma - step * step / 12, 0)); /* what the spreading added */
+  sample->judged[band] = (TfNoiseRing){ sum / values->len, sigma };
 }
 
 static void
-rings_judge (Rings *rings, TfNoise *noise)
+measure_rings (const float *pixels, const TfGeometry *g, const TfWork *work, TfNoise *noise)
 {
+  Sample sample = { .pixels = pixels, .g = g };
+  sample.step = (guint)MAX (1.0, floor (sqrt ((double)g->width * g->height / WANTED)));
+  tf_bands_run (work, PARTS * TF_BAND_ROWS, fill_part, &sample);
+  tf_bands_run (work, TF_NOISE_RINGS * TF_BAND_ROWS, judge_ring, &sample);
   for (guint k = 0; k < TF_NOISE_RINGS; k++)
-    {
-      GArray *values = rings->values[k];
-      if (values->len < FEWEST)
-        continue;
-      float *sorted = (float *)(void *)values->data;
-      sort_floats (sorted, values->len);
-      double step = spread_steps (sorted, values->len);
-      double sigma = core_sigma (sorted, values->len);
-      sigma = sqrt (MAX (sigma * sigma - step * step / 12, 0)); /* what the spreading added */
-      noise->rings[noise->n++] = (TfNoiseRing){ rings->sum[k] / values->len, sigma };
-    }
+    if (sample.good[k])
+      noise->rings[noise->n++] = sample.judged[k];
+  for (guint part = 0; part < PARTS; part++)
+    for (guint k = 0; k < TF_NOISE_RINGS; k++)
+      g_array_unref (sample.parts[part].values[k]);
 }
 
 double
@@ -233,118 +278,11 @@ tf_noise_at (const TfNoise *noise, double mu)
   return r[noise->n - 1].gauss;
 }
 
-/* -- correlation ----------------------------------------------------------------------------- */
-
-/* One row in units of its sigma; what is not weak is NaN. */
-static void
-weak_row (const float *pixels, const TfGeometry *g, const TfNoise *noise, guint y, float *mu,
-          float *out)
-{
-  const float *line = pixels + (gsize)y * g->width;
-  double sigma = noise->rings[noise->n - 1].gauss;
-  TfPlace place;
-  if (tf_geometry_is_map (g))
-    sigma = tf_geometry_pixel_to_sun (g, 0.5 * (g->width + 1), y + 1.0, &place)
-                ? tf_noise_at (noise, fabs (place.lat_deg))
-                : NAN;
-  if (g->projection == TF_PROJECTION_TAN)
-    tf_geometry_row_mu (g, y + 1.0, 1, g->width, mu);
-  for (guint x = 0; x < g->width; x++)
-    {
-      double s = g->projection == TF_PROJECTION_TAN ? tf_noise_at (noise, (double)mu[x]) : sigma;
-      double v = (double)line[x] / s;
-      out[x] = fabs (v) < CLIP ? (float)v : NAN;
-    }
-}
-
-typedef struct
-{
-  double product[REACH + 1][2 * REACH + 1], squares[REACH + 1][2 * REACH + 1],
-      n[REACH + 1][2 * REACH + 1];
-} Lags;
-
-static void
-lags_add (Lags *lags, float *const rows[REACH + 1], guint n_rows, guint width)
-{
-  for (guint dy = 0; dy < n_rows; dy++)
-    for (int dx = dy == 0 ? 1 : -REACH; dx <= REACH; dx++)
-      for (guint x = (guint)MAX (0, -dx); x + (guint)MAX (0, dx) < width; x++)
-        {
-          double a = (double)rows[0][x], b = (double)rows[dy][(int)x + dx];
-          if (isnan (a) || isnan (b))
-            continue;
-          lags->product[dy][dx + REACH] += a * b;
-          lags->squares[dy][dx + REACH] += 0.5 * (a * a + b * b);
-          lags->n[dy][dx + REACH]++;
-        }
-}
-
-static gboolean
-is_far (guint dy, guint k)
-{
-  return dy == REACH || k == 0 || k == 2 * REACH;
-}
-
-/* 1 + 2 sum of rho over half the lags. What is still there at the longest lags is the Sun's own
- * structure, not noise: it is taken off first. Only what stands above three times its own error
- * counts. */
-static double
-lags_factor (const Lags *lags)
-{
-  double sum = 0, n = 0, factor = 1;
-  for (guint dy = 0; dy <= REACH; dy++)
-    for (guint k = 0; k <= 2 * REACH; k++)
-      if (is_far (dy, k) && lags->squares[dy][k] > 0)
-        {
-          sum += lags->product[dy][k] / lags->squares[dy][k];
-          n++;
-        }
-  double far = n > 0 ? CLAMP (sum / n, 0, 0.9) : 0;
-  for (guint dy = 0; dy < REACH; dy++)
-    for (guint k = 1; k < 2 * REACH; k++)
-      {
-        if (!(lags->squares[dy][k] > 0))
-          continue;
-        double rho = (lags->product[dy][k] / lags->squares[dy][k] - far) / (1 - far);
-        if (rho > MAX (0.01, 3 / sqrt (lags->n[dy][k])))
-          factor += 2 * rho;
-      }
-  return factor;
-}
-
-static double
-measure_correlation (const float *pixels, const TfGeometry *g, const TfNoise *noise)
-{
-  if (noise->n == 0 || !(noise->rings[noise->n - 1].gauss > 0))
-    return 1;
-  Lags lags = { 0 };
-  float *rows[REACH + 1];
-  g_autofree float *mu = g_new (float, g->width);
-  g_autofree float *memory = g_new (float, (gsize)(REACH + 1) * g->width);
-  for (guint k = 0; k <= REACH; k++)
-    rows[k] = memory + (gsize)k * g->width;
-  guint groups = CLAMP (LOOKED_AT / g->width, 4, 32), step = MAX (REACH + 1, g->height / groups);
-  for (guint y = MIN (step / 2, g->height - 1); y < g->height; y += step)
-    {
-      guint n = MIN (REACH + 1, g->height - y);
-      for (guint k = 0; k < n; k++)
-        weak_row (pixels, g, noise, y + k, mu, rows[k]);
-      lags_add (&lags, rows, n, g->width);
-    }
-  return lags_factor (&lags);
-}
-
 void
-tf_noise_measure (const float *pixels, const TfGeometry *g, TfNoise *noise)
+tf_noise_measure (const float *pixels, const TfGeometry *g, const TfWork *work, TfNoise *noise)
 {
-  Rings rings = { 0 };
+  TfWork whole = { .workers = work != NULL ? work->workers : NULL }; /* never half a noise */
   *noise = (TfNoise){ .correlation = 1 };
-  for (guint k = 0; k < TF_NOISE_RINGS; k++)
-    rings.values[k] = g_array_new (FALSE, FALSE, sizeof (float));
-  guint step = (guint)MAX (1.0, floor (sqrt ((double)g->width * g->height / WANTED)));
-  rings_fill (&rings, pixels, g, step);
-  rings_judge (&rings, noise);
-  for (guint k = 0; k < TF_NOISE_RINGS; k++)
-    g_array_unref (rings.values[k]);
-  noise->correlation = measure_correlation (pixels, g, noise);
+  measure_rings (pixels, g, &whole, noise);
+  noise->correlation = tf_noise_correlation (pixels, g, &whole, noise);
 }
