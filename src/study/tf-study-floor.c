@@ -15,10 +15,13 @@ tf_study_has_floor (const TfRow *row, double gauss)
          && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
 }
 
-/* 3 sigma on the field used: a radial product and a map need no 1/mu. */
+/* 3 sigma on the field used: a radial product and a map need no 1/mu. A model map has no noise of an instrument, and a frame
+ * whose header gives no unit is not known to be in gauss: they have no say. */
 static double
 frame_floor (const TfFrameRow *frame)
 {
+  if (frame->info->kind == TF_KIND_MODEL_MAP || *frame->info->unit == '\0')
+    return NAN;
   gboolean as_is
       = frame->info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&frame->info->geometry);
   return 3.0 * frame->noise_gauss / (as_is ? 1.0 : 0.5);
@@ -35,7 +38,7 @@ tf_study_even_floor (TfLedger *ledger, GError **error)
   for (guint k = 0; k < frames->len; k++)
     {
       const TfFrameRow *frame = g_ptr_array_index (frames, k);
-      double floor = frame->info->kind == TF_KIND_MODEL_MAP ? NAN : frame_floor (frame);
+      double floor = frame_floor (frame);
       if (!(floor > 0))
         continue;
       GArray *floors = g_hash_table_lookup (by_instrument, frame->info->instrument);
