@@ -22,6 +22,8 @@ TfFill *tf_fill_new (const TfOutline *outline);
 void tf_fill_free (TfFill *fill);
 /** tf_fill_contains: unit vector in the Carrington frame; left-out areas are outside; FALSE for NaN. */
 gboolean tf_fill_contains (const TfFill *fill, const double unit[3]);
+/** tf_fill_row: the same for @n points; @inside gets 1 and 0. */
+void tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside);
 /**
  * tf_fill_sample: @n x @n points spread over the outline's box; calls @func for those inside.
  * @weight: solid angle that the point stands for, in units of its cell.

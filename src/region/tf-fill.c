@@ -250,6 +250,47 @@ tf_fill_contains (const TfFill *fill, const double unit[3])
   return cell == CELL_INSIDE;
 }
 
+/* Where in the grid each point of a row lies; a point that the plane does not hold, or that is none, lies outside. */
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+find_cells (const TfFill *fill, const double (*unit)[3], guint n, float *column, float *row)
+{
+  const double *w = fill->west, *m = fill->north, *c = fill->centre;
+  double su = 1.0 / fill->u_step, sv = 1.0 / fill->v_step, u0 = -fill->u_min * su, v0 = -fill->v_min * sv;
+  for (guint k = 0; k < n; k++)
+    {
+      double x = unit[k][0], y = unit[k][1], z = unit[k][2];
+      double along = x * c[0] + y * c[1] + z * c[2], over = along > 0.05 ? 1.0 / along : (double)NAN;
+      column[k] = (float)((x * w[0] + y * w[1] + z * w[2]) * over * su + u0);
+      row[k] = (float)((x * m[0] + y * m[1] + z * m[2]) * over * sv + v0);
+    }
+}
+
+/* A float's place is off by less than 1e-4 of a cell: mixed cells have a cell to spare on each side. */
+void
+tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside)
+{
+  if (!fill->plane)
+    {
+      for (guint k = 0; k < n; k++)
+        inside[k] = tf_fill_contains (fill, unit[k]) ? 1 : 0;
+      return;
+    }
+  g_autofree float *column = g_new (float, MAX (n, 1)), *row = g_new (float, MAX (n, 1));
+  find_cells (fill, unit, n, column, row);
+  for (guint k = 0; k < n; k++)
+    {
+      float c = column[k], r = row[k];
+      inside[k] = 0;
+      if (!(c >= 0.0f && c < CELLS && r >= 0.0f && r < CELLS))
+        continue;
+      guint8 cell = fill->cell[(guint)r][(guint)c];
+      if (cell == CELL_MIXED)
+        inside[k] = tf_fill_contains (fill, unit[k]) ? 1 : 0;
+      else
+        inside[k] = cell == CELL_INSIDE;
+    }
+}
+
 /* The whole sphere by rows of latitude, for outlines too large for the plane. */
 static void
 sample_sphere (const TfFill *fill, guint n, TfFillFunc func, gpointer data)

@@ -14,7 +14,8 @@ enum { CUT_SAMPLES = 32 };
 struct _TfMask
 {
   TfMaskBox box;
-  GArray *pixels; /* TfMaskPixel, row by row */
+  TfMaskPixel *pixels; /* row by row; room for the whole box */
+  guint n;
   gint32 *grid;
   guint missing;
   double cut;
@@ -27,6 +28,7 @@ typedef struct
 {
   Unit *unit;
   double *mu, *area;
+  guint8 *inside;
 } Row;
 
 typedef struct
@@ -72,19 +74,19 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
   const float *field = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
   gint32 *grid = mask->grid + (gsize)(y - box->y0) * box->width;
   tf_geometry_row_sun (g, y + 1.0, box->x0 + 1.0, box->width, row->unit, row->mu, row->area);
+  tf_fill_row (fill, (const Unit *)row->unit, box->width, row->inside);
   for (guint k = 0; k < box->width; k++)
     {
       double mu = map ? 1.0 : row->mu[k];
-      if (!(mu >= mu_min) || !tf_fill_contains (fill, row->unit[k]))
+      if (!row->inside[k] || !(mu >= mu_min))
         continue;
       if (!isfinite (field[k]))
         {
           mask->missing++;
           continue;
         }
-      grid[k] = (gint32)mask->pixels->len;
-      g_array_set_size (mask->pixels, mask->pixels->len + 1);
-      TfMaskPixel *pixel = &g_array_index (mask->pixels, TfMaskPixel, mask->pixels->len - 1);
+      grid[k] = (gint32)mask->n;
+      TfMaskPixel *pixel = &mask->pixels[mask->n++];
       pixel->x = box->x0 + k;
       pixel->y = y;
       pixel->field = field[k];
@@ -98,12 +100,14 @@ static void
 fill_rows (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min)
 {
   guint n = mask->box.width;
-  Row row = { .unit = g_new (Unit, n), .mu = g_new (double, n), .area = g_new (double, n) };
+  Row row = { .unit = g_new (Unit, n), .mu = g_new (double, n), .area = g_new (double, n),
+              .inside = g_new (guint8, n) };
   for (guint y = 0; y < mask->box.height; y++)
     fill_row (mask, frame, fill, mu_min, mask->box.y0 + y, &row);
   g_free (row.unit);
   g_free (row.mu);
   g_free (row.area);
+  g_free (row.inside);
 }
 
 TfOutline *
@@ -127,7 +131,7 @@ tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guin
   g_autoptr (TfFill) fill = tf_fill_new (here);
   mask->box = tf_mask_box (g, here, fill, mu_min);
   gsize n = (gsize)mask->box.width * mask->box.height;
-  mask->pixels = g_array_sized_new (FALSE, FALSE, sizeof (TfMaskPixel), (guint)n);
+  mask->pixels = g_new (TfMaskPixel, MAX (n, 1));
   mask->grid = g_new (gint32, MAX (n, 1));
   memset (mask->grid, 0xff, n * sizeof *mask->grid);
   mask->cut = find_cut (g, fill, &mask->box, mu_min);
@@ -146,7 +150,7 @@ static void
 clear (gpointer data)
 {
   TfMask *mask = data;
-  g_array_unref (mask->pixels);
+  g_free (mask->pixels);
   g_free (mask->grid);
 }
 
@@ -160,14 +164,14 @@ tf_mask_unref (TfMask *mask)
 guint
 tf_mask_get_n (const TfMask *mask)
 {
-  return mask->pixels->len;
+  return mask->n;
 }
 
 const TfMaskPixel *
 tf_mask_get (const TfMask *mask, guint k)
 {
-  g_return_val_if_fail (k < mask->pixels->len, NULL);
-  return &g_array_index (mask->pixels, TfMaskPixel, k);
+  g_return_val_if_fail (k < mask->n, NULL);
+  return &mask->pixels[k];
 }
 
 guint

@@ -55,29 +55,14 @@ caution_shape (TfMeasure *m)
     tf_notes_add (m->cautions, "pole-pinned", "s", m->positive.pinned ? "+" : "-");
 }
 
-/* How many pixels share the extreme value of one sign. */
-static guint
-count_extreme (const TfRegionSamples *samples, float sign, float *extreme)
-{
-  guint n = 0;
-  float top = 0.0f;
-  for (guint k = 0; k < samples->n; k++)
-    top = MAX (top, sign * samples->pixels[k].field);
-  for (guint k = 0; k < samples->n; k++)
-    n += !(sign * samples->pixels[k].field < top);
-  *extreme = top;
-  return n;
-}
-
 static void
 caution_pixels (TfMeasure *m, const TfRegionSamples *samples)
 {
-  for (int sign = -1; sign <= 1; sign += 2)
+  for (guint sign = 0; sign < 2; sign++)
     {
-      float extreme;
-      guint n = count_extreme (samples, (float)sign, &extreme);
-      if (n >= SATURATED_PIXELS && extreme >= (float)SATURATED_GAUSS)
-        tf_notes_add (m->cautions, "saturated-core", "id", (int)n, (double)extreme);
+      const TfExtreme *extreme = &samples->extreme[sign];
+      if (extreme->n >= SATURATED_PIXELS && extreme->value >= (float)SATURATED_GAUSS)
+        tf_notes_add (m->cautions, "saturated-core", "id", (int)extreme->n, (double)extreme->value);
     }
   if (tf_mask_get_missing (samples->mask) > 0)
     tf_notes_add (m->cautions, "touches-missing-data", "i", (int)tf_mask_get_missing (samples->mask));

@@ -129,7 +129,7 @@ keep_pixels (Kept *kept, const TfRegionSamples *samples)
   for (guint k = 0; k < samples->n; k++)
     {
       const TfSampled *s = &samples->samples[k];
-      double flux = s->field * s->weight;
+      double flux = (double)s->field * s->weight;
       if (fabsf (s->field) < s->floor || !(fabs (flux) > 0.0))
         continue;
       g_array_append_val (kept->pixels, samples->pixels[k]);

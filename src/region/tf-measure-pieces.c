@@ -52,15 +52,25 @@ fill_cells (Field *field, const TfRegionSamples *samples)
   field->width = (width + n - 1) / n;
   field->height = (height + n - 1) / n;
   field->cells = g_new0 (Cell, (gsize)field->width * field->height);
+  g_autofree guint *column = g_new (guint, MAX (width, 1));
+  for (guint x = 0; x < width; x++)
+    column[x] = x / n;
+  guint y = G_MAXUINT;
+  Cell *row = NULL;
   for (guint k = 0; k < samples->n; k++)
     {
       const TfMaskPixel *pixel = &samples->pixels[k];
       const TfSampled *s = &samples->samples[k];
-      Cell *cell = &field->cells[(gsize)((pixel->y - y0) / n) * field->width + (pixel->x - x0) / n];
-      cell->floor_flux += s->floor * s->weight;
+      if (pixel->y != y)
+        {
+          y = pixel->y;
+          row = field->cells + (gsize)((y - y0) / n) * field->width;
+        }
+      Cell *cell = &row[column[pixel->x - x0]];
+      cell->floor_flux += (double)s->floor * s->weight;
       if (fabsf (s->field) < s->floor)
         continue;
-      double flux = s->field * s->weight;
+      double flux = (double)s->field * s->weight;
       cell->flux += flux;
       for (guint i = 0; i < 3; i++)
         cell->sum[i] += flux * pixel->unit[i];

@@ -36,8 +36,15 @@ typedef enum
 typedef struct
 {
   float field, floor, sigma;
-  double weight; /* Mx a gauss as observed */
+  float weight; /* Mx a gauss as observed */
 } TfSampled;
+
+/* The greatest |field| of one sign in the frame's own values. */
+typedef struct
+{
+  float value;
+  guint n; /* pixels that have exactly it */
+} TfExtreme;
 
 /* A mask's pixels made ready to be summed. */
 typedef struct
@@ -49,6 +56,7 @@ typedef struct
   const TfMaskPixel *pixels;
   TfSampled *samples;
   float *added;     /* G as observed: what the potential estimate adds, already in the samples' field; NULL for the others */
+  TfExtreme extreme[2];
   double mean_mu;   /* maps: 1 */
   double mean_abs_z; /* of the unit vectors */
 } TfRegionSamples;

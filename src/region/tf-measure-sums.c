@@ -60,12 +60,22 @@ fill_sigma_table (const TfFrame *frame, double scale, float table[SIGMA_STEPS + 
   table[SIGMA_STEPS + 1] = table[SIGMA_STEPS];
 }
 
-static float
-look_up (const float *table, double t)
+/* @t in [0, 1]; the table goes one step beyond. */
+static inline float
+look_up (const float *table, float t)
 {
-  double at = CLAMP (t, 0.0, 1.0) * SIGMA_STEPS;
-  guint k = (guint)at;
-  return table[k] + (float)(at - k) * (table[k + 1] - table[k]);
+  float at = t * SIGMA_STEPS;
+  int k = (int)at;
+  return table[k] + (at - (float)k) * (table[k + 1] - table[k]);
+}
+
+static inline void
+look_at (TfExtreme *extreme, float size)
+{
+  if (size < extreme->value)
+    return;
+  extreme->n = size > extreme->value ? 1 : extreme->n + 1;
+  extreme->value = size;
 }
 
 static void
@@ -85,8 +95,9 @@ fill_samples (TfRegionSamples *s)
       TfSampled *out = &s->samples[k];
       double mu = pixel->mu, z = fabs (pixel->unit[2]);
       out->field = pixel->field * scale;
-      out->sigma = look_up (table, map ? z : mu);
-      out->weight = pixel->area_mm2 * CM2_IN_MM2 / (divides ? mu : 1.0);
+      out->sigma = look_up (table, map ? (float)z : pixel->mu);
+      out->weight = (float)(pixel->area_mm2 * CM2_IN_MM2 / (divides ? mu : 1.0));
+      look_at (&s->extreme[pixel->field > 0.0f ? TF_POSITIVE : TF_NEGATIVE], fabsf (pixel->field));
       if (even)
         out->floor = (float)(divides ? even_floor * mu : even_floor);
       else
@@ -179,7 +190,7 @@ tf_region_sums (const TfRegionSamples *samples, TfSums *sums)
         continue;
       guint level = (size >= floor) + (size >= high * floor) + (size >= strong * floor);
       tf_sum_add (&sums->at[level][s->field > 0.0f ? TF_POSITIVE : TF_NEGATIVE], &samples->pixels[k],
-                  size * s->weight);
+                  (double)size * s->weight);
     }
   for (guint level = TF_N_LEVELS - 1; level > 0; level--)
     for (guint sign = 0; sign < 2; sign++)
