@@ -11,7 +11,12 @@
 #include "tf-widget-style.h"
 
 static const guint32 ground = 0xff17191d;
-static const double label_share = 0.86;
+static const double label_share = 0.86, stretch_min = 0.5;
+
+enum
+{
+  SETTLE_MS = 120
+};
 
 /* -- the picture
  * ---------------------------------------------------------------------------------- */
@@ -151,52 +156,66 @@ overlay_style (TfPlate *self)
 }
 
 static gboolean
-same_scale (const TfView *a, const TfView *b)
+same_kind (const TfView *a, const TfView *b)
 {
-  return a->look == b->look && fabs (a->zoom - b->zoom) < 1e-9
-         && fabs (a->turn_deg - b->turn_deg) < 1e-9 && fabs (a->width - b->width) < 0.5
-         && fabs (a->height - b->height) < 0.5
+  return a->look == b->look && fabs (a->turn_deg - b->turn_deg) < 1e-9
+         && fabs (a->width - b->width) < 0.5 && fabs (a->height - b->height) < 0.5
          && fabs (a->centre_lon_deg - b->centre_lon_deg) < 1e-9
          && fabs (a->centre_lat_deg - b->centre_lat_deg) < 1e-9;
 }
 
-/* How far the picture moved since the overlay was made, view pixels. */
-static void
-moved_by (const TfPlate *self, double *dx, double *dy)
+static gboolean
+settled (gpointer data)
 {
-  const TfView *view = tf_session_get_view (self->session);
-  const TfGeometry *geometry = tf_frame_get_geometry (tf_session_get_frame (self->session));
-  double x0 = 0, y0 = 0, x1 = 0, y1 = 0;
-  *dx = *dy = 0;
-  if (view->look == TF_LOOK_DISK
-      && tf_view_from_pixel (&self->overlay_view, geometry, 1, 1, &x0, &y0)
-      && tf_view_from_pixel (view, geometry, 1, 1, &x1, &y1))
+  TfPlate *self = data;
+  self->settle = 0;
+  self->overlay_stale = TRUE;
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+  return G_SOURCE_REMOVE;
+}
+
+/* While the disk is zoomed the overlay is stretched, and made anew when the zooming rests. */
+static gboolean
+may_stretch (TfPlate *self, const TfView *view)
+{
+  double stretch = view->zoom / self->overlay_view.zoom;
+  if (fabs (stretch - 1) < 1e-9)
+    return TRUE;
+  if (view->look != TF_LOOK_DISK || stretch < stretch_min || stretch > 1 / stretch_min)
+    return FALSE;
+  g_clear_handle_id (&self->settle, g_source_remove);
+  self->settle = g_timeout_add (SETTLE_MS, settled, self);
+  return TRUE;
+}
+
+static gboolean
+same_content (TfPlate *self)
+{
+  TfOutline *draft = tf_session_get_draft (self->session);
+  const TfMeasure *measure = draft != NULL ? tf_session_get_measure (self->session) : NULL;
+  const void *now[3] = { draft, tf_session_get_region (self->session), measure };
+  gboolean same = TRUE;
+  for (guint k = 0; k < G_N_ELEMENTS (now); k++)
     {
-      *dx = x1 - x0;
-      *dy = y1 - y0;
+      same = same && now[k] == self->overlay_of[k];
+      self->overlay_of[k] = now[k];
     }
+  return same;
 }
 
 static gboolean
 overlay_serves (TfPlate *self)
 {
-  double dx, dy;
-  const TfMeasure *measure = tf_session_get_draft (self->session) != NULL
-                                 ? tf_session_get_measure (self->session)
-                                 : NULL;
-  const void *now[3]
-      = { tf_session_get_draft (self->session), tf_session_get_region (self->session), measure };
-  gboolean serves = self->overlay != NULL && !self->overlay_stale
-                    && same_scale (&self->overlay_view, tf_session_get_view (self->session));
-  for (guint k = 0; k < G_N_ELEMENTS (now); k++)
-    {
-      serves = serves && now[k] == self->overlay_of[k];
-      self->overlay_of[k] = now[k];
-    }
-  if (!serves)
+  const TfView *view = tf_session_get_view (self->session);
+  double dx, dy, stretch;
+  if (!same_content (self) || self->overlay == NULL || self->overlay_stale
+      || !same_kind (&self->overlay_view, view) || !may_stretch (self, view))
     return FALSE;
-  moved_by (self, &dx, &dy);
-  return fabs (dx) <= TF_PLATE_MARGIN && fabs (dy) <= TF_PLATE_MARGIN;
+  tf_plate_place_overlay (self, &dx, &dy, &stretch);
+  /* panned so far that the margin does not reach: only then, not while stretching */
+  return stretch > 1 || stretch < 1
+         || (fabs (dx + TF_PLATE_MARGIN) <= TF_PLATE_MARGIN
+             && fabs (dy + TF_PLATE_MARGIN) <= TF_PLATE_MARGIN);
 }
 
 void
@@ -208,6 +227,7 @@ tf_plate_draw_overlay (TfPlate *self, int width, int height)
   int scale = gtk_widget_get_scale_factor (GTK_WIDGET (self));
   double full_width = width + 2.0 * TF_PLATE_MARGIN, full_height = height + 2.0 * TF_PLATE_MARGIN;
   g_clear_pointer (&self->overlay, cairo_surface_destroy);
+  g_clear_handle_id (&self->settle, g_source_remove);
   self->overlay_view = *tf_session_get_view (self->session);
   self->overlay = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, (int)full_width * scale,
                                               (int)full_height * scale);
@@ -223,11 +243,21 @@ tf_plate_draw_overlay (TfPlate *self, int width, int height)
 }
 
 void
-tf_plate_overlay_shift (TfPlate *self, double *dx, double *dy)
+tf_plate_place_overlay (TfPlate *self, double *dx, double *dy, double *stretch)
 {
-  moved_by (self, dx, dy);
-  *dx = round (*dx) - TF_PLATE_MARGIN;
-  *dy = round (*dy) - TF_PLATE_MARGIN;
+  const TfView *view = tf_session_get_view (self->session);
+  const TfGeometry *geometry = tf_frame_get_geometry (tf_session_get_frame (self->session));
+  double x0 = 0, y0 = 0, x1 = 0, y1 = 0;
+  *stretch = 1;
+  *dx = *dy = -TF_PLATE_MARGIN;
+  if (view->look != TF_LOOK_DISK
+      || !tf_view_from_pixel (&self->overlay_view, geometry, 1, 1, &x0, &y0)
+      || !tf_view_from_pixel (view, geometry, 1, 1, &x1, &y1))
+    return;
+  if (fabs (view->zoom / self->overlay_view.zoom - 1) > 1e-9)
+    *stretch = view->zoom / self->overlay_view.zoom;
+  *dx = round (x1 - *stretch * (x0 + TF_PLATE_MARGIN));
+  *dy = round (y1 - *stretch * (y0 + TF_PLATE_MARGIN));
 }
 
 /* -- the line in hand

@@ -27,6 +27,7 @@ struct _TfPlate
   gboolean moved; /* the drag in hand went further than a click */
   double last_x, last_y;
   guint tick;
+  guint settle; /* the overlay is only stretched while zooming; made anew when that rests */
 };
 
 enum
@@ -39,8 +40,8 @@ enum
 void tf_plate_draw_picture (TfPlate *plate, int width, int height);
 void tf_plate_draw_overlay (TfPlate *plate, int width, int height);
 void tf_plate_draw_line (TfPlate *plate, cairo_t *cr, int width, int height);
-/** tf_plate_overlay_shift: where the overlay's top left stands now. */
-void tf_plate_overlay_shift (TfPlate *plate, double *dx, double *dy);
+/** tf_plate_place_overlay: where the overlay's top left stands now, and how much it is stretched. */
+void tf_plate_place_overlay (TfPlate *plate, double *dx, double *dy, double *stretch);
 /** tf_plate_item_at: (nullable) borrowed: the hint or mark under a point */
 TfRegionItem *tf_plate_item_at (TfPlate *plate, double x, double y);
 char *tf_plate_dup_description (TfPlate *plate);

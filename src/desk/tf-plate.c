@@ -196,17 +196,17 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   if (self->session == NULL || tf_session_get_frame (self->session) == NULL || width < 1
       || height < 1)
     return;
-  double dx, dy;
+  double dx, dy, stretch;
   const TfVertex *line;
   guint line_n;
   int scale = gtk_widget_get_scale_factor (widget);
   tf_session_get_line (self->session, &line, &line_n);
   tf_plate_draw_picture (self, width, height);
   tf_plate_draw_overlay (self, width, height);
-  tf_plate_overlay_shift (self, &dx, &dy);
+  tf_plate_place_overlay (self, &dx, &dy, &stretch);
   gtk_snapshot_push_clip (snapshot, &all);
   tf_surface_append (snapshot, widget, self->picture, 0, 0, scale);
-  tf_surface_append (snapshot, widget, self->overlay, dx, dy, scale);
+  tf_surface_append (snapshot, widget, self->overlay, dx, dy, scale / stretch);
   if (line_n > 0)
     {
       cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
@@ -238,6 +238,7 @@ static void
 dispose (GObject *object)
 {
   TfPlate *self = TF_PLATE (object);
+  g_clear_handle_id (&self->settle, g_source_remove);
   g_clear_object (&self->session);
   g_clear_pointer (&self->picture, cairo_surface_destroy);
   g_clear_pointer (&self->overlay, cairo_surface_destroy);
