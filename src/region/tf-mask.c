@@ -65,20 +65,32 @@ find_cut (const TfGeometry *geometry, const TfFill *fill, const TfMaskBox *box, 
   return cut.all > 0.0 ? 1.0 - cut.seen / cut.all : 0.0;
 }
 
+static gboolean
+any_above (const float *field, guint n, float least)
+{
+  guint above = 0;
+  for (guint k = 0; k < n; k++)
+    above += fabsf (field[k]) >= least;
+  return above > 0;
+}
+
+/* @least > 0: weaker pixels, and those without a value, are passed over. */
 static void
-fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, guint y, const Row *row)
+fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, float least, guint y, const Row *row)
 {
   const TfGeometry *g = tf_frame_get_geometry (frame);
   const TfMaskBox *box = &mask->box;
   gboolean map = tf_geometry_is_map (g);
   const float *field = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
   gint32 *grid = mask->grid + (gsize)(y - box->y0) * box->width;
+  if (least > 0.0f && !any_above (field, box->width, least))
+    return;
   tf_geometry_row_sun (g, y + 1.0, box->x0 + 1.0, box->width, row->unit, row->mu, row->area);
   tf_fill_row (fill, (const Unit *)row->unit, box->width, row->inside);
   for (guint k = 0; k < box->width; k++)
     {
       double mu = map ? 1.0 : row->mu[k];
-      if (!row->inside[k] || !(mu >= mu_min))
+      if (!row->inside[k] || !(mu >= mu_min) || (least > 0.0f && !(fabsf (field[k]) >= least)))
         continue;
       if (!isfinite (field[k]))
         {
@@ -97,13 +109,13 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
 }
 
 static void
-fill_rows (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min)
+fill_rows (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, float least)
 {
   guint n = mask->box.width;
   Row row = { .unit = g_new (Unit, n), .mu = g_new (double, n), .area = g_new (double, n),
               .inside = g_new (guint8, n) };
   for (guint y = 0; y < mask->box.height; y++)
-    fill_row (mask, frame, fill, mu_min, mask->box.y0 + y, &row);
+    fill_row (mask, frame, fill, mu_min, least, mask->box.y0 + y, &row);
   g_free (row.unit);
   g_free (row.mu);
   g_free (row.area);
@@ -124,6 +136,12 @@ tf_mask_outline (const TfFrame *frame, const TfOutline *outline, guint law)
 TfMask *
 tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law)
 {
+  return tf_mask_new_above (frame, outline, mu_min, law, 0.0f);
+}
+
+TfMask *
+tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law, float least_gauss)
+{
   g_return_val_if_fail (frame != NULL && outline != NULL, NULL);
   TfMask *mask = g_atomic_rc_box_new0 (TfMask);
   const TfGeometry *g = tf_frame_get_geometry (frame);
@@ -136,7 +154,7 @@ tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guin
   memset (mask->grid, 0xff, n * sizeof *mask->grid);
   mask->cut = find_cut (g, fill, &mask->box, mu_min);
   if (n > 0)
-    fill_rows (mask, frame, fill, mu_min);
+    fill_rows (mask, frame, fill, mu_min, least_gauss);
   return mask;
 }
 

@@ -33,6 +33,8 @@ typedef struct _TfMask TfMask; /* immutable, reference counted */
 TfOutline *tf_mask_outline (const TfFrame *frame, const TfOutline *outline, guint law);
 /** tf_mask_new: @outline at any time: it is carried to the frame's by rotation law @law. An outline wholly behind the limb gives no pixels. */
 TfMask *tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law);
+/** tf_mask_new_above: only pixels whose field as observed is @least_gauss or more of either sign; none is counted as missing. */
+TfMask *tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law, float least_gauss);
 TfMask *tf_mask_ref (TfMask *mask);
 void tf_mask_unref (TfMask *mask);
 guint tf_mask_get_n (const TfMask *mask);

@@ -15,6 +15,7 @@
 
 #include <math.h>
 #include <stdlib.h>
+#include <string.h>
 
 #include "tf-constants.h"
 #include "tf-fill-private.h"
@@ -114,40 +115,74 @@ middle_distance (const double values[DEFORMATIONS])
   return 1.2011 * median (copy, DEFORMATIONS);
 }
 
+typedef double Unit[3];
+
 /* The pixels above the floor of all deformations together. */
 typedef struct
 {
-  GArray *pixels; /* TfMaskPixel */
-  GArray *flux;   /* double: signed, Mx */
+  guint n;
+  Unit *unit;
+  double *flux; /* signed, Mx */
+  double *area; /* Mm2 */
+  guint8 *inside;
 } Kept;
 
 static void
 keep_pixels (Kept *kept, const TfRegionSamples *samples)
 {
-  kept->pixels = g_array_new (FALSE, FALSE, sizeof (TfMaskPixel));
-  kept->flux = g_array_new (FALSE, FALSE, sizeof (double));
+  guint most = MAX (samples->n, 1);
+  *kept = (Kept){ 0, g_new (Unit, most), g_new (double, most), g_new (double, most), g_new (guint8, most) };
   for (guint k = 0; k < samples->n; k++)
     {
       const TfSampled *s = &samples->samples[k];
       double flux = (double)s->field * s->weight;
       if (fabsf (s->field) < s->floor || !(fabs (flux) > 0.0))
         continue;
-      g_array_append_val (kept->pixels, samples->pixels[k]);
-      g_array_append_val (kept->flux, flux);
+      memcpy (kept->unit[kept->n], samples->pixels[k].unit, sizeof (Unit));
+      kept->flux[kept->n] = flux;
+      kept->area[kept->n++] = samples->pixels[k].area_mm2;
     }
+}
+
+static void
+close_kept (Kept *kept)
+{
+  g_free (kept->unit);
+  g_free (kept->flux);
+  g_free (kept->area);
+  g_free (kept->inside);
 }
 
 static void
 sum_inside (const Kept *kept, const TfOutline *outline, TfSum sums[2])
 {
   g_autoptr (TfFill) fill = tf_fill_new (outline);
-  for (guint k = 0; k < kept->pixels->len; k++)
+  tf_fill_row (fill, (const Unit *)kept->unit, kept->n, kept->inside);
+  for (guint k = 0; k < kept->n; k++)
+    if (kept->inside[k])
+      tf_sum_add (&sums[kept->flux[k] > 0.0 ? TF_POSITIVE : TF_NEGATIVE], kept->unit[k], kept->area[k],
+                  fabs (kept->flux[k]));
+}
+
+/* A bound below every floor there is on the frame, as observed; 0 where the field is not the observed one. */
+static float
+least_floor (const TfFrame *frame, const TfMeasureParams *params, const TfPotential *potential)
+{
+  static const double ROUNDING = 0.999;
+  double least = params->floor_gauss;
+  guint n;
+  const TfNoiseRing *rings = tf_frame_get_noise (frame, &n);
+  if (potential != NULL)
+    return 0.0f;
+  if (params->floor_kind == TF_FLOOR_EVEN)
+    least = tf_region_even_floor (frame, params) * (tf_region_divides (frame, params) ? params->mu_min : 1.0);
+  else if (isnan (least))
     {
-      const TfMaskPixel *pixel = &g_array_index (kept->pixels, TfMaskPixel, k);
-      double flux = g_array_index (kept->flux, double, k);
-      if (tf_fill_contains (fill, pixel->unit))
-        tf_sum_add (&sums[flux > 0.0 ? TF_POSITIVE : TF_NEGATIVE], pixel, fabs (flux));
+      least = n > 0 ? (double)INFINITY : 0.0;
+      for (guint k = 0; k < n; k++)
+        least = MIN (least, params->floor_sigma * rings[k].gauss * tf_region_scale (params));
     }
+  return least > 0.0 ? (float)(ROUNDING * least / tf_region_scale (params)) : 0.0f;
 }
 
 /* Left-out areas of the wide cap are not cut: each deformation has its own. */
@@ -158,7 +193,8 @@ open_kept (Kept *kept, const TfFrame *frame, const TfOutline *outline, const TfM
   double lon, lat, radius;
   tf_outline_get_cap (outline, &lon, &lat, &radius);
   g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_outline_get_time (outline), lon, lat, MIN (radius + reach, 80.0), 0);
-  g_autoptr (TfMask) mask = tf_mask_new (frame, cap, params->mu_min, (guint)params->law);
+  g_autoptr (TfMask) mask = tf_mask_new_above (frame, cap, params->mu_min, (guint)params->law,
+                                               least_floor (frame, params, potential));
   g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
   keep_pixels (kept, samples);
 }
@@ -219,8 +255,7 @@ tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const Tf
       trials.dipole[k] = d.dipole;
     }
   settle (&trials, spread);
-  g_array_unref (kept.pixels);
-  g_array_unref (kept.flux);
+  close_kept (&kept);
 }
 
 static double

@@ -100,7 +100,17 @@ TfRegionSamples *tf_region_samples_new (const TfFrame *frame, const TfMask *mask
                                         const TfPotential *potential);
 void tf_region_samples_free (TfRegionSamples *samples);
 void tf_region_sums (const TfRegionSamples *samples, TfSums *sums);
-void tf_sum_add (TfSum *sum, const TfMaskPixel *pixel, double flux);
+static inline void
+tf_sum_add (TfSum *sum, const double unit[3], double area, double flux)
+{
+  sum->flux += flux;
+  sum->sum[0] += flux * unit[0];
+  sum->sum[1] += flux * unit[1];
+  sum->sum[2] += flux * unit[2];
+  sum->area += area;
+  sum->area_z += area * unit[2];
+  sum->n++;
+}
 /** tf_region_floor: as observed; tf_region_sigma: of a pixel; at mu (maps: sin |latitude|). */
 double tf_region_even_floor (const TfFrame *frame, const TfMeasureParams *params);
 double tf_region_scale (const TfMeasureParams *params);

@@ -46,7 +46,8 @@ realise (const TfRegionSamples *samples, const float *smooth, double rest, Gauss
       const TfSampled *s = &samples->samples[k];
       double d = smooth[k] + (gauss != NULL ? rest * s->sigma * draw (gauss) : 0.0);
       if (fabs (d) >= s->floor)
-        tf_sum_add (&sums[d > 0.0 ? TF_POSITIVE : TF_NEGATIVE], &samples->pixels[k], fabs (d) * s->weight);
+        tf_sum_add (&sums[d > 0.0 ? TF_POSITIVE : TF_NEGATIVE], samples->pixels[k].unit, samples->pixels[k].area_mm2,
+                    fabs (d) * s->weight);
     }
 }
 

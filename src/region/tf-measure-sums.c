@@ -151,17 +151,6 @@ tf_region_samples_free (TfRegionSamples *samples)
   g_free (samples);
 }
 
-void
-tf_sum_add (TfSum *sum, const TfMaskPixel *pixel, double flux)
-{
-  sum->flux += flux;
-  for (guint k = 0; k < 3; k++)
-    sum->sum[k] += flux * pixel->unit[k];
-  sum->area += pixel->area_mm2;
-  sum->area_z += pixel->area_mm2 * pixel->unit[2];
-  sum->n++;
-}
-
 static void
 merge (TfSum *to, const TfSum *from)
 {
@@ -189,8 +178,8 @@ tf_region_sums (const TfRegionSamples *samples, TfSums *sums)
       if (!(size >= low * floor) || !(size > 0.0f))
         continue;
       guint level = (size >= floor) + (size >= high * floor) + (size >= strong * floor);
-      tf_sum_add (&sums->at[level][s->field > 0.0f ? TF_POSITIVE : TF_NEGATIVE], &samples->pixels[k],
-                  (double)size * s->weight);
+      tf_sum_add (&sums->at[level][s->field > 0.0f ? TF_POSITIVE : TF_NEGATIVE], samples->pixels[k].unit,
+                  samples->pixels[k].area_mm2, (double)size * s->weight);
     }
   for (guint level = TF_N_LEVELS - 1; level > 0; level--)
     for (guint sign = 0; sign < 2; sign++)
