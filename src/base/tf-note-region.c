@@ -7,6 +7,26 @@
 
 /* One row a code, in the order of the code's name. */
 const TfNoteKind tf_note_kinds_region[] = {
+  { "companion-apart", TF_NOTE_REASON,
+    N_ ("The intensity frame is {0:.0f} minutes from the magnetogram, more than {1:.0f}: choose one of the same time.") },
+  { "companion-limb-published", TF_NOTE_INFO,
+    N_ ("The intensity frame spans too little from centre to limb for a profile of its own: limb darkening is the published law's.") },
+  { "companion-no-disk", TF_NOTE_REASON,
+    N_ ("Spots are looked for on frames of the disk whose geometry is known: one of the two is not.") },
+  { "companion-no-intensity", TF_NOTE_REASON,
+    N_ ("The companion is not an intensity picture: choose a continuum or white-light frame.") },
+  { "companion-no-time", TF_NOTE_REASON,
+    N_ ("The time of one of the two frames is not known, so that nobody can tell whether they belong together: set it by hand.") },
+  { "companion-no-values", TF_NOTE_REASON,
+    N_ ("The intensity frame has no values on the disk: choose another.") },
+  { "companion-no-spots", TF_NOTE_INFO,
+    N_ ("The intensity frame shows no spot inside the outline: the third witness is told by the magnetogram.") },
+  { "companion-vantage", TF_NOTE_REASON,
+    N_ ("The two frames were taken {0:.1f} degrees apart, more than {1:.1f}: choose an intensity frame from the same vantage.") },
+  { "companion-view", TF_NOTE_REASON,
+    N_ ("The intensity frame shows {0:.0f} % of the outline: choose one with the whole region in view.") },
+  { "companion-view-disk", TF_NOTE_REASON,
+    N_ ("The intensity frame shows {0:.0f} % of what the magnetogram shows of the Sun, less than half: choose one of the same field of view.") },
   { "complexity-coarse", TF_NOTE_CAUTION,
     N_ ("The frame's pixels are too coarse for the reference resolution of {0:.1f} Mm: gradients and R come out too low. Compare with "
         "frames of the same instrument only.") },

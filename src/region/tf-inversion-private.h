@@ -36,6 +36,9 @@ typedef struct
 TfTraced *tf_traced_new (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *measure,
                          const TfComplexityParams *params, double shift_x, double shift_y, gboolean full);
 void tf_traced_free (TfTraced *traced);
+/** tf_traced_spec: the patch that tf_traced_new makes, for another frame on the same nodes. */
+void tf_traced_spec (TfPatchSpec *spec, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params,
+                     double shift_x, double shift_y);
 
 /** tf_traced_gradient: derivatives of the field used at a plane place between the nodes; FALSE where there are none. */
 gboolean tf_traced_gradient (const TfTraced *traced, double x, double y, double *dx, double *dy);

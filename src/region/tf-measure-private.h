@@ -148,6 +148,11 @@ void tf_region_pieces (const TfRegionSamples *samples, double flux_unsigned, TfP
 /** tf_axis_witness: the polarity whose pole is west; 0 when nearer than @least deg, ABSENT without two poles. */
 int tf_axis_witness (const TfAxis *axis, double least);
 
+/* tf-measure.c */
+/** tf_region_measure: tf_measure_masked with the third witness told by a leading spot, unless @spot_witness is TF_WITNESS_ABSENT. */
+gboolean tf_region_measure (TfMeasure *measure, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
+                            const TfMeasureParams *params, int spot_witness, GError **error);
+
 /* tf-measure-cautions.c */
 void tf_region_cautions (TfMeasure *measure, const TfRegionSamples *samples, const TfAxis *axis);
 

@@ -205,7 +205,7 @@ check_params (const TfFrame *frame, const TfMeasureParams *params, GError **erro
 /* @outline is at the frame's time. */
 static void
 measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
-         const TfMeasureParams *params, const TfPotential *potential)
+         const TfMeasureParams *params, const TfPotential *potential, int spot_witness)
 {
   g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
   double radius = tf_frame_get_geometry (frame)->radius_mm;
@@ -220,6 +220,8 @@ measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline
   tf_region_sums (samples, &sums);
   tf_axis_from_sums (&axis, base, outline, radius, circle);
   tf_region_pieces (samples, axis.flux[0] + axis.flux[1], &pieces);
+  if (spot_witness != TF_WITNESS_ABSENT)
+    pieces.witness = spot_witness;
   find_terms (&terms, m, samples, &sums, &axis, outline, potential);
   m->pieces = pieces.n;
   set_pole (&m->positive, frame, &axis, TF_POSITIVE, &base[TF_POSITIVE], &terms);
@@ -255,8 +257,8 @@ make_potential (const TfFrame *frame, const TfMask *mask, const TfMeasureParams 
 }
 
 gboolean
-tf_measure_masked (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
-                   const TfMeasureParams *params, GError **error)
+tf_region_measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
+                   const TfMeasureParams *params, int spot_witness, GError **error)
 {
   g_return_val_if_fail (m != NULL && frame != NULL && mask != NULL && params != NULL, FALSE);
   memset (m, 0, sizeof *m);
@@ -281,8 +283,15 @@ tf_measure_masked (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const
                               "memory for its box. Choose the radial field, or another frame."));
       return FALSE;
     }
-  measure (m, frame, mask, here, params, potential);
+  measure (m, frame, mask, here, params, potential, spot_witness);
   return TRUE;
+}
+
+gboolean
+tf_measure_masked (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
+                   const TfMeasureParams *params, GError **error)
+{
+  return tf_region_measure (m, frame, mask, outline, params, TF_WITNESS_ABSENT, error);
 }
 
 gboolean

@@ -12,16 +12,16 @@ enum { MOST_NODES = 1200 };
 /* About the outline's box, so that a potential field and a smoothing have their surroundings. */
 static const double MARGIN_MM = 30.0;
 
-static TfPatch *
-make_patch (const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params, double shift_x, double shift_y)
+void
+tf_traced_spec (TfPatchSpec *spec, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params, double shift_x,
+                double shift_y)
 {
-  TfPatchSpec spec = { .step_mm = params->step_mm, .fwhm_mm = params->fwhm_mm, .shift_x = shift_x, .shift_y = shift_y,
-                       .most_nodes = MOST_NODES };
   double radius;
-  tf_outline_get_cap (outline, &spec.lon_deg, &spec.lat_deg, &radius);
-  spec.half_x_mm = spec.half_y_mm
+  *spec = (TfPatchSpec){ .step_mm = params->step_mm, .fwhm_mm = params->fwhm_mm, .shift_x = shift_x, .shift_y = shift_y,
+                         .most_nodes = MOST_NODES };
+  tf_outline_get_cap (outline, &spec->lon_deg, &spec->lat_deg, &radius);
+  spec->half_x_mm = spec->half_y_mm
       = 2.0 * tf_frame_get_geometry (frame)->radius_mm * sin (0.5 * radius * TF_DEG) + MARGIN_MM;
-  return tf_patch_new (frame, &spec);
 }
 
 /* The node's field as the measurement uses it, except for the potential one. */
@@ -121,7 +121,9 @@ tf_traced_new (const TfFrame *frame, const TfOutline *outline, const TfMeasurePa
                double shift_x, double shift_y, gboolean full)
 {
   TfTraced *t = g_new0 (TfTraced, 1);
-  t->patch = make_patch (frame, outline, params, shift_x, shift_y);
+  TfPatchSpec spec;
+  tf_traced_spec (&spec, frame, outline, params, shift_x, shift_y);
+  t->patch = tf_patch_new (frame, &spec);
   t->fill = tf_fill_new (outline);
   gsize n = t->patch->n;
   t->inside = g_new0 (guint8, n);

@@ -22,3 +22,4 @@ void builder_complexity (TfComplexity *c, const TfFrame *frame, const TfOutline 
 void add_inversion_tests (void);
 void add_complexity_tests (void);
 void add_potential_tests (void);
+void add_companion_tests (void);

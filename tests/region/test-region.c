@@ -18,5 +18,6 @@ main (int argc, char **argv)
   add_outline_tests ();
   add_real_tests ();
   add_potential_tests ();
+  add_companion_tests ();
   return g_test_run ();
 }
