@@ -13,7 +13,7 @@
 
 void
 tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfMeasure *measure, const char *method,
-                        const TfStudy *study, const TfComplexity *complexity, const TfComplexityParams *figures)
+                        const TfStudy *study, const TfFigures *figures)
 {
   const TfFrameInfo *info = tf_frame_get_info (frame);
   TfSampleRow row;
@@ -25,7 +25,9 @@ tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *f
   tf_json_string (builder, "method", method);
   tf_json_string (builder, "instrument", info->instrument);
   tf_measure_build_members (measure, builder);
-  tf_complexity_build_members (complexity, figures, builder);
+  tf_complexity_build_members (figures->complexity, figures->complexity_params, builder);
+  json_builder_set_member_name (builder, "spots");
+  tf_spots_build_json (figures->spots, figures->companion_params, builder);
   tf_verdict_build_members (&verdict, &row, builder);
   json_builder_end_object (builder);
 }

@@ -12,6 +12,7 @@
 #include <json-glib/json-glib.h>
 
 #include "tf-bands.h"
+#include "tf-companion.h"
 #include "tf-complexity.h"
 #include "tf-frame.h"
 #include "tf-study.h"
@@ -90,11 +91,17 @@ void tf_progress_end (TfProgress *progress);
 TfLedger *tf_batch_open_measured (const char *path, gboolean with_hints, GError **error);
 
 /* -- measures ---------------------------------------------------------------------------------- */
-/** tf_batch_build_measure: the whole `measure` object of one frame as the builder's next value. @complexity: (nullable): null in JSON, and then
- * @figures may be NULL. */
+/** TfFigures: what may stand beside a measure; each pair may be NULL. */
+typedef struct
+{
+  const TfComplexity *complexity;
+  const TfComplexityParams *complexity_params;
+  const TfSpots *spots; /* of a companion intensity frame */
+  const TfCompanionParams *companion_params;
+} TfFigures;
+/** tf_batch_build_measure: the whole `measure` object of one frame as the builder's next value. What @figures do not have is null. */
 void tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfMeasure *measure,
-                             const char *method, const TfStudy *study, const TfComplexity *complexity,
-                             const TfComplexityParams *figures);
+                             const char *method, const TfStudy *study, const TfFigures *figures);
 /** tf_batch_dup_measure_text: the same for a person, a few lines. */
 char *tf_batch_dup_measure_text (const TfMeasure *measure, const TfStudy *study);
 

@@ -22,13 +22,14 @@ typedef struct
 static void
 build_hint (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfHint *hint, const Words *words)
 {
+  const TfFigures none = { NULL };
   json_builder_begin_object (builder);
   tf_json_string (builder, "kind", hint->unipolar ? "unipolar" : "bipole");
   tf_json_string (builder, "size", hint->measure.ephemeral ? "ephemeral" : "region");
   json_builder_set_member_name (builder, "outline");
   tf_outline_build_json (hint->outline, builder);
   json_builder_set_member_name (builder, "measure");
-  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study, NULL, NULL);
+  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study, &none);
   json_builder_set_member_name (builder, "cautions");
   tf_notes_build_json (hint->cautions, builder);
   json_builder_end_object (builder);

@@ -15,10 +15,11 @@
 typedef struct
 {
   gboolean json, carrington, anyway;
-  char *cap, *outline, *floor, *even_floor;
+  char *cap, *outline, *floor, *even_floor, *companion;
   TfFrameWords frame;
   TfMeasureParams params;
-  TfComplexityParams figures;
+  TfComplexityParams complexity_params;
+  TfCompanionParams companion_params;
 } Words;
 
 static TfOutline *
@@ -70,6 +71,33 @@ read_floors (Words *words, GError **error)
   return FALSE;
 }
 
+/* The companion's spots, where one is named; FALSE with an error when it cannot be read. */
+static gboolean
+find_spots (const Words *words, const TfFrame *frame, const TfOutline *outline, const TfWork *work, TfSpots *spots, GError **error)
+{
+  const TfFrameSpec whole = { 0 };
+  if (words->companion == NULL)
+    return TRUE;
+  g_autoptr (TfFrame) intensity = tf_frame_open_companion (words->companion, &whole, work, error);
+  if (intensity == NULL)
+    return FALSE;
+  tf_spots_find (spots, frame, intensity, outline, &words->params, &words->companion_params);
+  return TRUE;
+}
+
+static void
+print_text (const TfMeasure *m, const TfStudy *study, const TfFigures *figures)
+{
+  g_autofree char *text = tf_batch_dup_measure_text (m, study);
+  g_autofree char *complexity = tf_complexity_dup_text (figures->complexity);
+  tf_batch_print (text);
+  tf_batch_print (complexity);
+  if (figures->spots == NULL)
+    return;
+  g_autofree char *spots = tf_spots_dup_text (figures->spots);
+  tf_batch_print (spots);
+}
+
 static int
 measure (Words *words, const char *path)
 {
@@ -79,25 +107,25 @@ measure (Words *words, const char *path)
   g_autoptr (TfOutline) outline = frame != NULL ? read_outline (words, frame, &error) : NULL;
   g_auto (TfMeasure) m = { 0 };
   g_auto (TfComplexity) complexity = { 0 };
-  if (outline == NULL || !tf_measure_region (&m, frame, outline, &words->params, &error))
+  g_auto (TfSpots) spots = { 0 };
+  if (outline == NULL || !find_spots (words, frame, outline, work, &spots, &error)
+      || !tf_measure_region_with (&m, frame, outline, &words->params, &spots, &error))
     {
       tf_batch_say_error (error);
       return g_error_matches (error, G_OPTION_ERROR, G_OPTION_ERROR_BAD_VALUE) ? TF_EXIT_CALL : TF_EXIT_NOTHING;
     }
-  tf_complexity_region (&complexity, frame, outline, &words->params, &words->figures);
+  tf_complexity_region (&complexity, frame, outline, &words->params, &words->complexity_params);
+  const TfFigures figures = { &complexity, &words->complexity_params, words->companion != NULL ? &spots : NULL, &words->companion_params };
   g_autoptr (TfStudy) study = tf_study_new_default ();
   if (words->json)
     {
       g_autofree char *method = tf_options_dup_canonical (tf_measure_options, &words->params, TF_MEASURE_METHOD);
       g_autoptr (JsonBuilder) builder = json_builder_new ();
-      tf_batch_build_measure (builder, path, frame, &m, method, study, &complexity, &words->figures);
+      tf_batch_build_measure (builder, path, frame, &m, method, study, &figures);
       tf_batch_print_json (builder);
       return TF_EXIT_DONE;
     }
-  g_autofree char *text = tf_batch_dup_measure_text (&m, study);
-  g_autofree char *figures = tf_complexity_dup_text (&complexity);
-  tf_batch_print (text);
-  tf_batch_print (figures);
+  print_text (&m, study, &figures);
   return TF_EXIT_DONE;
 }
 
@@ -108,6 +136,7 @@ words_clear (Words *words)
   g_free (words->outline);
   g_free (words->floor);
   g_free (words->even_floor);
+  g_free (words->companion);
 }
 
 G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (Words, words_clear)
@@ -124,22 +153,26 @@ tf_verb_measure (int argc, char **argv)
     { "floor", 0, 0, G_OPTION_ARG_STRING, &words.floor, N_ ("local floor on the field as observed"), "G" },
     { "even-floor", 0, 0, G_OPTION_ARG_STRING, &words.even_floor, N_ ("even floor on the field used"), "G" },
     { "complexity-anyway", 0, 0, G_OPTION_ARG_NONE, &words.anyway, N_ ("give complexity near the limb as well"), NULL },
+    { "companion", 0, 0, G_OPTION_ARG_FILENAME, &words.companion, N_ ("an intensity frame of the same time: spots, leading spot"), "FILE" },
     { NULL },
   };
   tf_measure_params_init (&words.params);
-  tf_complexity_params_init (&words.figures);
+  tf_companion_params_init (&words.companion_params);
+  tf_complexity_params_init (&words.complexity_params);
   GOptionContext *context = tf_batch_context ("measure");
   g_option_context_add_main_entries (context, entries, GETTEXT_PACKAGE);
   tf_batch_add_frame_words (context, &words.frame);
   g_option_context_add_group (context, tf_options_new_group (tf_measure_options, &words.params, "method", N_ ("the method")));
-  g_option_context_add_group (context, tf_options_new_group (tf_complexity_options, &words.figures, "complexity",
+  g_option_context_add_group (context, tf_options_new_group (tf_complexity_options, &words.complexity_params, "complexity",
                                                              N_ ("inversion lines and complexity")));
+  g_option_context_add_group (context, tf_options_new_group (tf_companion_options, &words.companion_params, "spots",
+                                                             N_ ("a companion intensity frame")));
   g_autoptr (GError) error = NULL;
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
   if (argc != 2 || (words.cap == NULL) == (words.outline == NULL))
     return tf_batch_usage ("measure", _ ("Name one frame, and either --cap LON,LAT,RADIUS or --outline FILE."));
-  words.figures.anyway |= words.anyway;
+  words.complexity_params.anyway |= words.anyway;
   if (!read_floors (&words, &error))
     {
       tf_batch_say_error (error);

@@ -32,6 +32,8 @@ complexity cautions""".split()
 COMPLEXITY = """line_length_mm strong_gradient_length_mm gradient_weighted_length_gauss max_gradient_gauss_mm r_mx r_log10
 flux_near_line_mx pieces delta_candidate delta_reason lines resolution_fwhm_mm resolution_step_mm field_used parameters
 cautions""".split()
+SPOTS = """matched reason leading_polarity axis_bearing_deg axis_tilt_deg separation_deg area_msh umbra_area_msh delta spots
+umbra penumbra parameters cautions""".split()
 POLE = """flux_mx flux_sigma_mx lon_deg carrington_lon_deg lat_deg place_sigma_deg pixels magnetic_area_msh""".split()
 LAWS = "study sample hale joy mean_tilt_deg median_tilt_deg cycle_choice what_if cautions".split()
 HALE = """cycle hemisphere n regions keeps breaks cannot_say share_breaks bounds expected_false wilson clopper_pearson cluster
@@ -207,6 +209,41 @@ def _():
     asked = document("measure", "--json", "--complexity-anyway", path, edge)
     has(asked["complexity"], COMPLEXITY)
     assert any(note["code"] == "complexity-limb-asked" for note in asked["complexity"]["cautions"])
+
+
+@test("a companion intensity frame gives spots and the third witness, and one of another time is refused in words")
+def _():
+    looks = document("inspect", "--json", *demo())
+    bright = [look for look in looks if look["role"] == "intensity"]
+    assert bright, "no intensity frame among the demo frames"
+    when = bright[0]["time"][:16]
+    field = [look for look in looks if look["role"] == "field" and look["kind"] == "disk" and look["time"][:16] == when]
+    far = [look for look in field if abs(look["observer"]["stonyhurst_lon_deg"]) > 2]
+    field = [look for look in field if look not in far]
+    other = [look for look in looks if look["role"] == "field" and look["kind"] == "disk" and look["time"][:10] != when[:10]]
+    assert field and other and far
+    hints = [h for h in document("hints", "--json", field[0]["file"])[0]["hints"] if h["kind"] == "bipole"]
+    found = 0
+    for hint in hints:
+        outline = os.path.join(work, "companion-outline.json")
+        with open(outline, "w", encoding="utf-8") as file:
+            json.dump(hint["outline"], file)
+        measure = document("measure", "--json", field[0]["file"], "--outline", outline, "--companion", bright[0]["file"])
+        spots = measure["spots"]
+        has(spots, SPOTS)
+        assert spots["matched"] and spots["reason"] is None
+        if spots["spots"]:
+            found += 1
+            assert measure["leading"]["witnesses"][2] == spots["leading_polarity"]
+            assert spots["penumbra"] and spots["area_msh"] > 0
+    assert found > 0, "no spot in any region"
+    refused = document("measure", "--json", other[0]["file"], "--cap", "0,0,8", "--companion", bright[0]["file"])["spots"]
+    assert not refused["matched"] and refused["reason"]["code"] == "companion-apart"
+    refused = document("measure", "--json", far[0]["file"], "--cap", f"{far[0]['observer']['stonyhurst_lon_deg']},0,8", "--companion",
+                       bright[0]["file"])["spots"]
+    assert not refused["matched"] and refused["reason"]["code"] == "companion-vantage"
+    assert document("measure", "--json", field[0]["file"], "--cap", "0,0,8")["spots"] is None
+    call("measure", field[0]["file"], "--cap", "0,0,8", "--companion", field[0]["file"], code=3)
 
 
 @test("fill skips what is there, goes on past bad files, and check finds nothing wrong")
