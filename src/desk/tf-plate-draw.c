@@ -15,7 +15,8 @@ static const double label_share = 0.86, stretch_min = 0.5;
 
 enum
 {
-  SETTLE_MS = 120
+  SETTLE_MS = 120,
+  CROSS = 9
 };
 
 /* -- the picture
@@ -263,6 +264,23 @@ tf_plate_place_overlay (TfPlate *self, double *dx, double *dy, double *stretch)
 /* -- the line in hand
  * ---------------------------------------------------------------------------------- */
 
+/* Where the arrow keys have put the pointer. */
+static void
+draw_cross (TfPlate *self, cairo_t *cr)
+{
+  double x = floor (self->pointer_x) + 0.5, y = floor (self->pointer_y) + 0.5;
+  for (guint k = 0; k < 2; k++)
+    {
+      cairo_move_to (cr, x - CROSS, y);
+      cairo_line_to (cr, x + CROSS, y);
+      cairo_move_to (cr, x, y - CROSS);
+      cairo_line_to (cr, x, y + CROSS);
+      cairo_set_source_rgba (cr, k, k, k, 0.9);
+      cairo_set_line_width (cr, k == 0 ? 3 : 1);
+      cairo_stroke (cr);
+    }
+}
+
 typedef double Point[2];
 
 void
@@ -272,6 +290,8 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
   guint n;
   TfFrame *frame = tf_session_get_frame (self->session);
   tf_session_get_line (self->session, &line, &n);
+  if (self->by_keys && self->pointer_in)
+    draw_cross (self, cr);
   if (n == 0 || frame == NULL)
     return;
   Projector p = { tf_session_get_view (self->session), tf_frame_get_geometry (frame), 0 };

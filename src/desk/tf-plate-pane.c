@@ -95,8 +95,9 @@ choice_changed (TfPlatePane *self)
   if (tool == TF_TOOL_OUTLINE)
     words = _ ("Draw round the region with the button held. Esc puts the tool away.");
   else if (tool == TF_TOOL_POLYGON)
-    words = _ (
-        "Click the corners. Enter closes, Ctrl+Z takes the last one back, Esc puts the tool away.");
+    words
+        = _ ("Click the corners, or move with the arrow keys and press Space. Enter closes, Ctrl+Z "
+             "takes the last one back.");
   else if (tf_session_get_draft (self->session) != NULL)
     words = _ ("A draft: K keeps it as a mark, Esc discards it.");
   gtk_widget_set_visible (GTK_WIDGET (self->tool_words), words != NULL);

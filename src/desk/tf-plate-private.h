@@ -22,7 +22,9 @@ struct _TfPlate
       [3]; /* draft, region, measured draft that it was made for; compared, never followed */
 
   gboolean pointer_in;
+  gboolean by_keys; /* the pointer's place was set by the arrow keys: a cross shows it */
   double pointer_x, pointer_y;
+  double mouse_x, mouse_y; /* where the mouse was last */
   char *readout;
   gboolean moved; /* the drag in hand went further than a click */
   double last_x, last_y;

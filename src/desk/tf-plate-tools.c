@@ -12,7 +12,9 @@
 enum
 {
   CLICK_SLACK = 4,
-  KEY_STEP = 40
+  KEY_STEP = 40,
+  KEY_POINTER = 8,
+  KEY_FINE = 1
 };
 static const double wheel_factor = 1.18;
 
@@ -157,7 +159,12 @@ scrolled (GtkEventControllerScroll *scroll, double dx, double dy, TfPlate *self)
 static void
 motion (GtkEventControllerMotion *controller, double x, double y, TfPlate *self)
 {
+  if (self->by_keys && hypot (x - self->mouse_x, y - self->mouse_y) < 1)
+    return; /* said again by the toolkit: the mouse itself did not move */
+  self->mouse_x = x;
+  self->mouse_y = y;
   self->pointer_in = TRUE;
+  self->by_keys = FALSE;
   self->pointer_x = x;
   self->pointer_y = y;
   tf_plate_update_readout (self);
@@ -168,34 +175,60 @@ motion (GtkEventControllerMotion *controller, double x, double y, TfPlate *self)
 static void
 leave (GtkEventControllerMotion *controller, TfPlate *self)
 {
+  if (self->by_keys)
+    return;
   self->pointer_in = FALSE;
   tf_plate_update_readout (self);
   gtk_widget_queue_draw (GTK_WIDGET (self));
+}
+
+/* With the polygon tool the arrow keys move the pointer's place and the space bar sets a corner there, so
+ * that an outline can be drawn by keyboard alone. */
+static void
+move_pointer (TfPlate *self, double dx, double dy)
+{
+  double width = gtk_widget_get_width (GTK_WIDGET (self));
+  double height = gtk_widget_get_height (GTK_WIDGET (self));
+  if (!self->pointer_in)
+    {
+      self->pointer_x = width / 2;
+      self->pointer_y = height / 2;
+    }
+  self->pointer_in = self->by_keys = TRUE;
+  self->pointer_x = CLAMP (self->pointer_x + dx, 0, width);
+  self->pointer_y = CLAMP (self->pointer_y + dy, 0, height);
+  tf_plate_update_readout (self);
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+}
+
+static gboolean
+arrow (guint key, double *dx, double *dy)
+{
+  *dx = key == GDK_KEY_Left ? -1 : key == GDK_KEY_Right ? 1 : 0;
+  *dy = key == GDK_KEY_Up ? -1 : key == GDK_KEY_Down ? 1 : 0;
+  return key == GDK_KEY_Left || key == GDK_KEY_Right || key == GDK_KEY_Up || key == GDK_KEY_Down;
 }
 
 static gboolean
 key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
              TfPlate *self)
 {
+  double dx, dy;
   if (self->session == NULL || (state & (GDK_CONTROL_MASK | GDK_ALT_MASK)) != 0)
     return FALSE;
-  switch (key)
+  gboolean polygon = tf_session_get_tool (self->session) == TF_TOOL_POLYGON;
+  if (polygon && key == GDK_KEY_space && self->pointer_in)
+    draw_to (self, self->pointer_x, self->pointer_y);
+  else if (!arrow (key, &dx, &dy))
+    return FALSE;
+  else if (polygon)
     {
-    case GDK_KEY_Left:
-      tf_session_pan (self->session, KEY_STEP, 0);
-      return TRUE;
-    case GDK_KEY_Right:
-      tf_session_pan (self->session, -KEY_STEP, 0);
-      return TRUE;
-    case GDK_KEY_Up:
-      tf_session_pan (self->session, 0, KEY_STEP);
-      return TRUE;
-    case GDK_KEY_Down:
-      tf_session_pan (self->session, 0, -KEY_STEP);
-      return TRUE;
-    default:
-      return FALSE;
+      double step = (state & GDK_SHIFT_MASK) != 0 ? KEY_FINE : KEY_POINTER;
+      move_pointer (self, dx * step, dy * step);
     }
+  else
+    tf_session_pan (self->session, -dx * KEY_STEP, -dy * KEY_STEP);
+  return TRUE;
 }
 
 static void

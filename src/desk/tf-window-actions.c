@@ -98,6 +98,8 @@ toggle_tool (gpointer window, TfTool tool)
 {
   TfSession *session = session_of (window);
   tf_session_set_tool (session, tf_session_get_tool (session) == tool ? TF_TOOL_NONE : tool);
+  if (tf_session_get_tool (session) != TF_TOOL_NONE)
+    tf_window_focus_plate (window);
 }
 
 ACTION (draw) { toggle_tool (window, TF_TOOL_OUTLINE); }

@@ -7,6 +7,8 @@
 
 G_BEGIN_DECLS
 
+/** tf_window_focus_plate: the keys of drawing go to the plate. */
+void tf_window_focus_plate (TfWindow *window);
 /* tf-window-actions.c */
 void tf_window_add_actions (TfWindow *window);
 /** tf_window_update_actions: which commands are possible now, and the state of those that have

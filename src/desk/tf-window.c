@@ -53,6 +53,12 @@ tf_window_get_session (TfWindow *self)
 }
 
 void
+tf_window_focus_plate (TfWindow *self)
+{
+  gtk_widget_grab_focus (GTK_WIDGET (tf_plate_pane_get_plate (self->plate_pane)));
+}
+
+void
 tf_window_say (TfWindow *self, const char *text)
 {
   g_autofree char *plain = g_markup_escape_text (text, -1);
@@ -383,7 +389,8 @@ pass_over_status_pages (GtkWidget *widget)
 {
   if (ADW_IS_STATUS_PAGE (widget))
     gtk_widget_set_focusable (gtk_widget_get_first_child (widget), FALSE);
-  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL; child = gtk_widget_get_next_sibling (child))
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL;
+       child = gtk_widget_get_next_sibling (child))
     pass_over_status_pages (child);
 }
 
