@@ -109,8 +109,11 @@ char *
 tf_plate_dup_description (TfPlate *self)
 {
   TfFrame *frame = self->session != NULL ? tf_session_get_frame (self->session) : NULL;
+  const char *problem
+      = self->session != NULL ? tf_session_get_frame_problem (self->session) : NULL;
   if (frame == NULL)
-    return g_strdup (_ ("no frame is open"));
+    return problem != NULL ? g_strdup_printf (_ ("not shown: %s"), problem)
+                           : g_strdup (_ ("no frame is open"));
   static const char *const looks[] = { N_ ("disk"), N_ ("unrolled"), N_ ("close") };
   g_autofree char *time = tf_time_dup_iso (tf_frame_get_info (frame)->time, 0);
   GString *text = g_string_new (NULL);
