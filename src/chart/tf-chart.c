@@ -148,7 +148,7 @@ tf_chart_diamond_path (cairo_t *cr, double x, double y, double radius)
 static void
 draw_struck (cairo_t *cr, const TfChartStyle *style, double x, double y, double radius)
 {
-  double reach = radius * 0.95, width = CLAMP (radius * 0.2, 1.0, 2.2);
+  double reach = radius * 0.95, width = CLAMP (radius * 0.17, 1.0, 2.2);
   tf_chart_set (cr, style->breaks);
   cairo_fill (cr);
   cairo_set_line_cap (cr, CAIRO_LINE_CAP_ROUND);
@@ -157,7 +157,7 @@ draw_struck (cairo_t *cr, const TfChartStyle *style, double x, double y, double 
   if (radius >= TF_SEAM_RADIUS)
     {
       tf_chart_set (cr, style->ground);
-      cairo_set_line_width (cr, width + 1.6);
+      cairo_set_line_width (cr, width + 1.2);
       cairo_stroke_preserve (cr);
     }
   tf_chart_set (cr, style->ink);

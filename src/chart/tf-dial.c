@@ -81,12 +81,19 @@ lay_out (cairo_t *cr, const TfDial *dial, const TfChartStyle *style, TfArea area
   double side = side_width (cr, style) + 2 * PAD;
   double beside = MIN (area.width / 2 - letter - PAD - side, (area.height - foot) / 2 - PAD);
   double under = MIN (area.width / 2 - letter - 2 * PAD, (area.height - foot - 2 * line) / 2 - PAD);
-  at.beside = beside >= under;
+  double column = SIDE_LINES * line;
+  at.beside = beside >= under && PAD + column + foot <= area.height;
   at.radius = MAX (at.beside ? beside : under, 1.0);
-  at.y = area.y + PAD + at.radius;
+  at.y = area.y + PAD + MAX (at.radius, at.beside ? column / 2 : 0);
   at.name_y = at.y + at.radius + 3;
-  at.side_x = at.beside ? at.x + at.radius + letter + 2 * PAD : area.x + PAD;
-  at.side_y = at.beside ? at.y + MIN (0.7 * line, at.radius - SIDE_LINES * line) : at.name_y + foot;
+  at.side_x = area.x + PAD;
+  at.side_y = at.name_y + foot;
+  if (at.beside)
+    {
+      at.side_x = at.x + at.radius + letter + 2 * PAD;
+      at.side_y = MAX (area.y + PAD, at.y + MIN (0.7 * line, at.radius - column));
+      at.name_y = MAX (at.name_y, at.side_y + column);
+    }
   return at;
 }
 

@@ -115,14 +115,14 @@ put_round (const Raster *raster, guint32 *pixel, const Dot *dot, double dx, doub
 static void
 put_struck (const Raster *raster, guint32 *pixel, const Dot *dot, double dx, double dy)
 {
-  double width = CLAMP (dot->radius * 0.2, 1.0, 2.2), reach = dot->radius * 0.95;
+  double width = CLAMP (dot->radius * 0.17, 1.0, 2.2), reach = dot->radius * 0.95;
   double along = fabs (dx - dy) * G_SQRT2 / 2, off = fabs (dx + dy) * G_SQRT2 / 2;
   double red = cover ((dot->radius - fabs (dx) - fabs (dy)) * G_SQRT2 / 2);
   double stroke = cover (reach * G_SQRT2 - along);
   if (red > 0)
     blend (pixel, raster->style->breaks, red * dot->alpha);
   if (stroke > 0 && dot->radius >= TF_SEAM_RADIUS * raster->scale_x)
-    blend (pixel, raster->style->ground, stroke * cover (width * 0.5 + 0.8 - off) * dot->alpha);
+    blend (pixel, raster->style->ground, stroke * cover (width * 0.5 + 0.6 - off) * dot->alpha);
   if (stroke > 0)
     blend (pixel, raster->style->ink, stroke * cover (width * 0.5 - off) * dot->alpha);
 }

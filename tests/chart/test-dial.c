@@ -136,8 +136,8 @@ an_empty_dial_has_a_circle_alone (void)
 static void
 nothing_is_cut_off (void)
 {
-  static const double sizes[][2]
-      = { { 300, 190 }, { 200, 230 }, { 160, 160 }, { 48, 48 }, { 20, 20 }, { 340, 340 } };
+  static const double sizes[][2] = { { 300, 190 }, { 200, 230 }, { 160, 160 }, { 48, 48 },
+                                     { 20, 20 },   { 340, 340 }, { 405, 228 }, { 272, 152 } };
   static const double texts[] = { 9, 11, 14, 22 };
   for (guint k = 0; k < G_N_ELEMENTS (sizes); k++)
     for (guint t = 0; t < G_N_ELEMENTS (texts); t++)
