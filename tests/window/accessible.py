@@ -80,4 +80,22 @@ def _(given):
                 raise Failed(f"the tab key did not reach {missing}: {seen}")
 
 
+@scenario("at 200 % text on 1280 x 720 all that a judgement needs is within the window")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-large-") as folder:
+        ledger = os.path.join(folder, "station.ledger")
+        fill(given, ledger)
+        with Window(given, [ledger], text_scale=2.0) as w:
+            w.wait("hints on the plate", lambda: (w.counts() or (0, 0))[1] > 0)
+            w.action("next-hint")
+            w.wait("a hint to be chosen", lambda: "chosen: hint" in w.plate())
+            _, _, width, height = w.extents(w.frame())
+            for name, role in (("Plate", "image"), ("Dial", "image"), ("Wings", "image"),
+                               ("Keep.*", "push button"), ("Drop.*", "push button"), ("Undo", "push button")):
+                node = w.find(name, role)
+                x, y, wide, high = w.extents(node)
+                if not (wide > 0 and high > 0 and x >= 0 and y >= 0 and x + wide <= width and y + high <= height):
+                    raise Failed(f"{name} lies at {x}, {y}, {wide} x {high} in {width} x {height}")
+
+
 harness.main()

@@ -89,7 +89,7 @@ class Window:
         os.makedirs(os.path.join(config, "gtk-4.0"), exist_ok=True)
         with open(os.path.join(config, "gtk-4.0", "settings.ini"), "w", encoding="utf-8") as file:
             file.write("[Settings]\ngtk-enable-animations=0\ngtk-cursor-blink=0\n"
-                       f"gtk-font-name=DejaVu Sans 10\ngtk-xft-dpi={int(96 * 1024 * self.text_scale)}\n")
+                       f"gtk-font-name=DejaVu Sans {10 * self.text_scale:g}\n")
         return dict(keep, HOME=self.folder("home"), XDG_CONFIG_HOME=config, XDG_DATA_HOME=self.folder("data"),
                     XDG_CACHE_HOME=self.folder("cache"), XDG_STATE_HOME=self.folder("state"),
                     XDG_RUNTIME_DIR=self.folder("runtime"), LC_ALL="C.UTF-8", GTK_A11Y="atspi", GSK_RENDERER="cairo",
@@ -181,6 +181,19 @@ class Window:
     def log(self):
         with open(self.log_path, encoding="utf-8", errors="replace") as file:
             return file.read()
+
+    def settle(self):
+        """Waits until two pictures of the display in a row are the same."""
+        last = [None]
+
+        def same():
+            path = os.path.join(self.base, "settle.png")
+            self.picture(path)
+            with open(path, "rb") as file:
+                now = file.read()
+            before, last[0] = last[0], now
+            return now == before
+        self.wait("the window to come to rest", same)
 
     # -- actions over the session bus
 
@@ -411,7 +424,8 @@ class Window:
     # -- pictures and evidence
 
     def picture(self, path):
-        subprocess.run(["import", "-window", "root", path], env=self.env, check=True, stdout=subprocess.DEVNULL,
+        subprocess.run(["import", "-window", "root", "+set", "date:create", "+set", "date:modify", "-define",
+                        "png:exclude-chunks=date,time", path], env=self.env, check=True, stdout=subprocess.DEVNULL,
                        stderr=subprocess.DEVNULL, timeout=30)
 
     def keep_evidence(self):

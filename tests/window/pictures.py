@@ -17,8 +17,8 @@ SHOWN = "2013-10-12T06:00"
 
 
 def to_frame(window, time):
+    window.wait("a frame on the plate", window.counts)
     for _ in range(40):
-        window.wait("a frame on the plate", window.counts)
         if f"frame of {time}" in window.plate():
             return
         before = window.plate().split(";")[0]
@@ -27,23 +27,16 @@ def to_frame(window, time):
     raise Failed(f"no frame of {time}")
 
 
-def keep_hints(window, n):
-    for _ in range(n):
-        marks, hints = window.counts()
-        if hints < 2:
-            return
+def keep_until_broken(window):
+    """Keeps hints, the strongest first, up to one that breaks Hale's law; the slip shows that one."""
+    marks, hints = window.counts()
+    for done in range(marks, marks + hints - 1):
         window.action("next-hint")
         window.wait("a hint to be chosen", lambda: "chosen: hint" in window.plate())
+        broken = "breaks Hale" in window.texts()
         window.action("keep")
-        window.wait("the mark on the plate", lambda: window.counts()[0] == marks + 1)
-
-
-def choose_broken(window):
-    """Goes through the hints to one that breaks Hale's law, where there is one."""
-    for _ in range(window.counts()[1]):
-        window.action("next-hint")
-        window.wait("a hint to be chosen", lambda: "chosen: hint" in window.plate())
-        if "breaks Hale" in window.texts():
+        window.wait("the mark on the plate", lambda: window.counts()[0] == done + 1)
+        if broken:
             return
 
 
@@ -52,9 +45,7 @@ def take(given, ledger, name, size, dark, scale=1.0):
     with Window(given, [ledger, "--show-hints"], size=size, dark=dark, text_scale=scale) as w:
         w.action("set-person", w.text("north desk"))
         to_frame(w, SHOWN)
-        if w.counts()[0] == 0:
-            keep_hints(w, 5)
-        choose_broken(w)
+        keep_until_broken(w)
         w.settle()
         w.picture(path)
     subprocess.run(["convert", path, "-strip", "-dither", "None", "-colors", "160", "PNG8:" + path], check=True)
@@ -76,7 +67,10 @@ def main():
             if given.only in (None, name):
                 pid = os.fork()  # each window has a bus of its own, and a process has one for life
                 if pid == 0:
-                    take(given, ledger, name, size, dark, given.scale)
+                    own = os.path.join(folder, name, "brindle-head.ledger")
+                    os.makedirs(os.path.dirname(own))
+                    shutil.copyfile(ledger, own)
+                    take(given, own, name, size, dark, given.scale)
                     os._exit(0)
                 if os.waitpid(pid, 0)[1] != 0:
                     sys.exit(1)
