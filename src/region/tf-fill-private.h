@@ -5,9 +5,10 @@
 
 /* TfFill: an outline made ready for very many "is this point inside?" questions.
  *
- * The outline is laid into the gnomonic plane about its cap's centre, where great circles are straight lines. A grid
- * over that plane knows which cells lie wholly inside or outside; only points in cells that an edge may touch are
- * tested edge by edge. The answer is that of tf_outline_contains.
+ * The outline is laid into the gnomonic plane about its cap's centre, where great circles are
+ * straight lines. A grid over that plane knows which cells lie wholly inside or outside; only
+ * points in cells that an edge may touch are tested edge by edge. The answer is that of
+ * tf_outline_contains.
  */
 
 #include <glib.h>
@@ -20,7 +21,8 @@ typedef struct _TfFill TfFill;
 
 TfFill *tf_fill_new (const TfOutline *outline);
 void tf_fill_free (TfFill *fill);
-/** tf_fill_contains: unit vector in the Carrington frame; left-out areas are outside; FALSE for NaN. */
+/** tf_fill_contains: unit vector in the Carrington frame; left-out areas are outside; FALSE for
+ * NaN. */
 gboolean tf_fill_contains (const TfFill *fill, const double unit[3]);
 /** tf_fill_row: the same for @n points; @inside gets 1 and 0. */
 void tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside);

@@ -34,8 +34,8 @@ struct _TfFill
   gboolean plane; /* FALSE: too large, the outline itself is asked */
   double west[3], north[3], centre[3];
   double u_min, v_min, u_step, v_step;
-  GArray *edges;      /* Edge */
-  GArray *row_edges;  /* guint: edges that touch each row of cells */
+  GArray *edges;     /* Edge */
+  GArray *row_edges; /* guint: edges that touch each row of cells */
   guint row_first[CELLS + 1];
   guint8 cell[CELLS][CELLS];
 };
@@ -171,7 +171,7 @@ settle_row (TfFill *fill, guint row)
         {
           if (last == CELL_MIXED)
             last = test_edges (fill, row, fill->u_min + (c + 0.5) * fill->u_step, v) ? CELL_INSIDE
-                                                                                       : CELL_OUTSIDE;
+                                                                                     : CELL_OUTSIDE;
           fill->cell[row][c] = last;
         }
       last = fill->cell[row][c];
@@ -250,22 +250,26 @@ tf_fill_contains (const TfFill *fill, const double unit[3])
   return cell == CELL_INSIDE;
 }
 
-/* Where in the grid each point of a row lies; a point that the plane does not hold, or that is none, lies outside. */
+/* Where in the grid each point of a row lies; a point that the plane does not hold, or that is
+ * none, lies outside. */
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
 find_cells (const TfFill *fill, const double (*unit)[3], guint n, float *column, float *row)
 {
   const double *w = fill->west, *m = fill->north, *c = fill->centre;
-  double su = 1.0 / fill->u_step, sv = 1.0 / fill->v_step, u0 = -fill->u_min * su, v0 = -fill->v_min * sv;
+  double su = 1.0 / fill->u_step, sv = 1.0 / fill->v_step, u0 = -fill->u_min * su,
+         v0 = -fill->v_min * sv;
   for (guint k = 0; k < n; k++)
     {
       double x = unit[k][0], y = unit[k][1], z = unit[k][2];
-      double along = x * c[0] + y * c[1] + z * c[2], over = along > 0.05 ? 1.0 / along : (double)NAN;
+      double along = x * c[0] + y * c[1] + z * c[2],
+             over = along > 0.05 ? 1.0 / along : (double)NAN;
       column[k] = (float)((x * w[0] + y * w[1] + z * w[2]) * over * su + u0);
       row[k] = (float)((x * m[0] + y * m[1] + z * m[2]) * over * sv + v0);
     }
 }
 
-/* A float's place is off by less than 1e-4 of a cell: mixed cells have a cell to spare on each side. */
+/* A float's place is off by less than 1e-4 of a cell: mixed cells have a cell to spare on each
+ * side. */
 void
 tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside)
 {

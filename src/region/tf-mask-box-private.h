@@ -18,6 +18,7 @@ typedef struct
   gboolean whole;              /* every point of the outline is on the frame and at mu >= mu_min */
 } TfMaskBox;
 
-TfMaskBox tf_mask_box (const TfGeometry *geometry, const TfOutline *outline, const TfFill *fill, double mu_min);
+TfMaskBox tf_mask_box (const TfGeometry *geometry, const TfOutline *outline, const TfFill *fill,
+                       double mu_min);
 
 G_END_DECLS

@@ -26,10 +26,11 @@ extend (Extent *extent, double x, double y, double margin)
   extent->y1 = MAX (extent->y1, y + margin);
 }
 
-/* On a map columns are counted from the middle of the outline, so that it is not torn at longitude 0; what lies over
- * the map's own edge is another time and stays outside. */
+/* On a map columns are counted from the middle of the outline, so that it is not torn at
+ * longitude 0; what lies over the map's own edge is another time and stays outside. */
 static gboolean
-place (const TfGeometry *g, double centre_lon, const double unit[3], double *x, double *y, double *mu)
+place (const TfGeometry *g, double centre_lon, const double unit[3], double *x, double *y,
+       double *mu)
 {
   double lon, lat;
   tf_sphere_lonlat (unit, &lon, &lat);
@@ -43,7 +44,8 @@ place (const TfGeometry *g, double centre_lon, const double unit[3], double *x, 
 }
 
 static void
-extend_edge (Extent *extent, const TfGeometry *g, double centre_lon, const TfVertex *a, const TfVertex *b)
+extend_edge (Extent *extent, const TfGeometry *g, double centre_lon, const TfVertex *a,
+             const TfVertex *b)
 {
   double p[3], q[3];
   tf_sphere_unit (a->lon_deg, a->lat_deg, p);
@@ -53,7 +55,8 @@ extend_edge (Extent *extent, const TfGeometry *g, double centre_lon, const TfVer
   for (guint k = 0; k < n; k++)
     {
       double x, y, mu, t = (double)k / n;
-      double unit[3] = { p[0] + t * (q[0] - p[0]), p[1] + t * (q[1] - p[1]), p[2] + t * (q[2] - p[2]) };
+      double unit[3]
+          = { p[0] + t * (q[0] - p[0]), p[1] + t * (q[1] - p[1]), p[2] + t * (q[2] - p[2]) };
       if (!place (g, centre_lon, unit, &x, &y, &mu))
         {
           extent->hidden = TRUE;
@@ -68,7 +71,10 @@ extend_edge (Extent *extent, const TfGeometry *g, double centre_lon, const TfVer
 static void
 extend_limb (Extent *extent, const TfGeometry *g, const TfFill *fill)
 {
-  enum { POINTS = 1440 };
+  enum
+  {
+    POINTS = 1440
+  };
   double to[3], a[3], b[3];
   double l0 = tf_geometry_central_carrington (g), b0 = g->observer.b0_deg;
   tf_sphere_unit (l0, b0, to);
@@ -95,7 +101,8 @@ extend_poles (Extent *extent, const TfGeometry *g, const TfFill *fill)
       double unit[3] = { 0.0, 0.0, sign };
       if (!tf_fill_contains (fill, unit))
         continue;
-      extend (extent, 0.0, sign * (g->cd[1][1] < 0.0 ? -1.0 : 1.0) > 0.0 ? g->height + 1.0 : 0.0, 0.0);
+      extend (extent, 0.0, sign * (g->cd[1][1] < 0.0 ? -1.0 : 1.0) > 0.0 ? g->height + 1.0 : 0.0,
+              0.0);
       extend (extent, g->width + 1.0, extent->y0, 0.0);
     }
 }
@@ -113,13 +120,14 @@ clip (const Extent *extent, const TfGeometry *g, double mu_min)
   box.y0 = (guint)(y0 - 1.0);
   box.width = (guint)(x1 - x0) + 1;
   box.height = (guint)(y1 - y0) + 1;
-  box.whole = !extent->hidden && extent->mu_min >= mu_min && extent->x0 >= 0.5 && extent->x1 <= w + 0.5
-              && extent->y0 >= 0.5 && extent->y1 <= h + 0.5;
+  box.whole = !extent->hidden && extent->mu_min >= mu_min && extent->x0 >= 0.5
+              && extent->x1 <= w + 0.5 && extent->y0 >= 0.5 && extent->y1 <= h + 0.5;
   return box;
 }
 
 TfMaskBox
-tf_mask_box (const TfGeometry *geometry, const TfOutline *outline, const TfFill *fill, double mu_min)
+tf_mask_box (const TfGeometry *geometry, const TfOutline *outline, const TfFill *fill,
+             double mu_min)
 {
   Extent extent = { INFINITY, -INFINITY, INFINITY, -INFINITY, FALSE, 1.0 };
   double lon, lat, radius;

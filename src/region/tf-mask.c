@@ -9,7 +9,10 @@
 #include "tf-fill-private.h"
 #include "tf-mask-box-private.h"
 
-enum { CUT_SAMPLES = 32 };
+enum
+{
+  CUT_SAMPLES = 32
+};
 
 struct _TfMask
 {
@@ -76,12 +79,14 @@ any_above (const float *field, guint n, float least)
 
 /* @least > 0: weaker pixels, and those without a value, are passed over. */
 static void
-fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, float least, guint y, const Row *row)
+fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, float least,
+          guint y, const Row *row)
 {
   const TfGeometry *g = tf_frame_get_geometry (frame);
   const TfMaskBox *box = &mask->box;
   gboolean map = tf_geometry_is_map (g);
-  const float *field = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
+  const float *field
+      = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
   gint32 *grid = mask->grid + (gsize)(y - box->y0) * box->width;
   if (least > 0.0f && !any_above (field, box->width, least))
     return;
@@ -112,7 +117,9 @@ static void
 fill_rows (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, float least)
 {
   guint n = mask->box.width;
-  Row row = { .unit = g_new (Unit, n), .mu = g_new (double, n), .area = g_new (double, n),
+  Row row = { .unit = g_new (Unit, n),
+              .mu = g_new (double, n),
+              .area = g_new (double, n),
               .inside = g_new (guint8, n) };
   for (guint y = 0; y < mask->box.height; y++)
     fill_row (mask, frame, fill, mu_min, least, mask->box.y0 + y, &row);
@@ -140,7 +147,8 @@ tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_min, guin
 }
 
 TfMask *
-tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law, float least_gauss)
+tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law,
+                   float least_gauss)
 {
   g_return_val_if_fail (frame != NULL && outline != NULL, NULL);
   TfMask *mask = g_atomic_rc_box_new0 (TfMask);

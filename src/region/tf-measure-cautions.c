@@ -13,7 +13,11 @@ static const double FLOOR_SIGMAS = 2.0;
 static const double CUT_SHARE = 0.01;
 /* A core that cannot go higher shows as several pixels of exactly one extreme value. */
 static const double SATURATED_GAUSS = 500.0;
-enum { SATURATED_PIXELS = 4, MOST_PIECES = 2 };
+enum
+{
+  SATURATED_PIXELS = 4,
+  MOST_PIECES = 2
+};
 
 static void
 caution_limb (TfMeasure *m)
@@ -65,7 +69,8 @@ caution_pixels (TfMeasure *m, const TfRegionSamples *samples)
         tf_notes_add (m->cautions, "saturated-core", "id", (int)extreme->n, (double)extreme->value);
     }
   if (tf_mask_get_missing (samples->mask) > 0)
-    tf_notes_add (m->cautions, "touches-missing-data", "i", (int)tf_mask_get_missing (samples->mask));
+    tf_notes_add (m->cautions, "touches-missing-data", "i",
+                  (int)tf_mask_get_missing (samples->mask));
   if (tf_mask_get_cut (samples->mask) > CUT_SHARE)
     tf_notes_add (m->cautions, "outline-cut", "d", 100.0 * tf_mask_get_cut (samples->mask));
 }
@@ -74,7 +79,8 @@ caution_pixels (TfMeasure *m, const TfRegionSamples *samples)
 static void
 caution_floor (TfMeasure *m, const TfRegionSamples *samples)
 {
-  gboolean falls = samples->params->floor_kind == TF_FLOOR_EVEN && tf_region_divides (samples->frame, samples->params);
+  gboolean falls = samples->params->floor_kind == TF_FLOOR_EVEN
+                   && tf_region_divides (samples->frame, samples->params);
   double observed = falls ? m->floor_gauss * samples->mean_mu : m->floor_gauss;
   if (observed < FLOOR_SIGMAS * m->noise_gauss)
     tf_notes_add (m->cautions, "floor-below-noise", "dd", observed, m->noise_gauss);

@@ -49,8 +49,9 @@ build_witnesses (JsonBuilder *builder, const TfMeasure *measure)
 static void
 build_leader (JsonBuilder *builder, const TfMeasure *measure)
 {
-  static const TfPole none
-      = { .lon_deg = __builtin_nan (""), .carrington_lon_deg = __builtin_nan (""), .lat_deg = __builtin_nan ("") };
+  static const TfPole none = { .lon_deg = __builtin_nan (""),
+                               .carrington_lon_deg = __builtin_nan (""),
+                               .lat_deg = __builtin_nan ("") };
   const TfPole *lead = measure->leading_polarity > 0 ? &measure->positive : &measure->negative;
   const TfPole *follow = measure->leading_polarity > 0 ? &measure->negative : &measure->positive;
   gboolean has = measure->leading_polarity != 0;

@@ -4,19 +4,23 @@
 
 /* The noise term of the uncertainty.
  *
- * Summing sigma^2 over the pixels above the floor forgets those that cross it. So for every pixel in the outline and each
- * polarity the variance of f (d) = d [d > floor] is taken, d normal about the smoothed field B with the frame's sigma:
- * z = (floor - B) / sigma, Q and q the normal tail and density, E f = B Q + sigma q,
- * E f^2 = (B^2 + sigma^2) Q + sigma (B + floor) q (moments of a truncated normal: Johnson, Kotz & Balakrishnan, Continuous
- * Univariate Distributions 1, ch. 13; from memory). It is carried to a pole by the influence (position - pole) * weight / flux, to the
- * tilt with the covariance of west and north, and multiplied by the frame's noise correlation.
- * B itself keeps a share of the noise, sigma^2 times the sum of the kernel's squares; the sigma that is laid over it is the
- * rest, so that both together are the pixel's own.
+ * Summing sigma^2 over the pixels above the floor forgets those that cross it. So for every
+ * pixel in the outline and each polarity the variance of f (d) = d [d > floor] is taken, d
+ * normal about the smoothed field B with the frame's sigma: z = (floor - B) / sigma, Q and q
+ * the normal tail and density, E f = B Q + sigma q, E f^2 = (B^2 + sigma^2) Q + sigma (B +
+ * floor) q (moments of a truncated normal: Johnson, Kotz & Balakrishnan, Continuous Univariate
+ * Distributions 1, ch. 13; from memory). It is carried to a pole by the influence (position -
+ * pole) * weight / flux, to the tilt with the covariance of west and north, and multiplied by
+ * the frame's noise correlation. B itself keeps a share of the noise, sigma^2 times the sum of
+ * the kernel's squares; the sigma that is laid over it is the rest, so that both together are
+ * the pixel's own.
  *
- * Crossings also shift the mean: weak pixels come in above the floor more often than strong ones drop out, E f > f (B). The
- * shift grows with the number of pixels near the floor, the scatter with its root, so on fine frames the shift rules. It is not
- * taken off the flux (noise_flux_mx tells what noise alone brings in); its square is added, each pixel's own and that of the sum, so
- * that the term is the root mean square departure from the measure without noise.
+ * Crossings also shift the mean: weak pixels come in above the floor more often than strong
+ * ones drop out, E f > f (B). The shift grows with the number of pixels near the floor, the
+ * scatter with its root, so on fine frames the shift rules. It is not taken off the flux
+ * (noise_flux_mx tells what noise alone brings in); its square is added, each pixel's own and
+ * that of the sum, so that the term is the root mean square departure from the measure without
+ * noise.
  */
 
 #include <math.h>
@@ -25,11 +29,15 @@
 #include "tf-constants.h"
 #include "tf-measure-private.h"
 
-enum { CHUNK = 256 };
+enum
+{
+  CHUNK = 256
+};
 static const float Z_MAX = 7.0f;
 
-/* One chunk of pixels: the smoothed field, the floor, sigma and weight; and what comes out: for both polarities the mean square
- * departure and the shift, weighted, and what noise alone brings in. */
+/* One chunk of pixels: the smoothed field, the floor, sigma and weight; and what comes out:
+ * for both polarities the mean square departure and the shift, weighted, and what noise alone
+ * brings in. */
 typedef struct
 {
   float field[CHUNK], floor[CHUNK], sigma[CHUNK], weight[CHUNK];
@@ -40,7 +48,8 @@ typedef struct
 static const float WEIGHT = 1e-16f;
 static const double UNIT = 1e16;
 
-/* Sums over one polarity: variance of flux, and its first and second moments in place; shift of the flux and its first moment. */
+/* Sums over one polarity: variance of flux, and its first and second moments in place; shift
+ * of the flux and its first moment. */
 typedef struct
 {
   double v, vz;
@@ -54,7 +63,8 @@ typedef struct
   double c[3], shift[2];
 } Place;
 
-/* Normal density for z in [0, Z_MAX]: 2^x by its exponent bits and a polynomial in the rest, to 2e-7 of itself. */
+/* Normal density for z in [0, Z_MAX]: 2^x by its exponent bits and a polynomial in the rest,
+ * to 2e-7 of itself. */
 static inline float
 density (float z)
 {
@@ -66,20 +76,33 @@ density (float z)
   float x = -0.72134752f * z * z; /* z^2 / (2 ln 2) */
   int whole = (int)x;
   float g = (x - (float)whole + 0.5f) * 0.69314718f;
-  float rest = 1.0f + g * (1.0f + g * (0.5f + g * (0.16666667f + g * (0.041666667f + g * (0.0083333333f + g * 0.0013888889f)))));
+  float rest = 1.0f
+               + g
+                     * (1.0f
+                        + g
+                              * (0.5f
+                                 + g
+                                       * (0.16666667f
+                                          + g
+                                                * (0.041666667f
+                                                   + g * (0.0083333333f + g * 0.0013888889f)))));
   power.bits = (guint32)(whole + 127) << 23;
   return 0.28209479f * rest * power.value; /* 1 / sqrt (2 pi) / sqrt (2) */
 }
 
-/* Normal tail from the density, to 7.5e-8: Zelen & Severo 1964, in Abramowitz & Stegun, 26.2.17 (from memory). */
+/* Normal tail from the density, to 7.5e-8: Zelen & Severo 1964, in Abramowitz & Stegun,
+ * 26.2.17 (from memory). */
 static inline float
 tail_of (float z, float q)
 {
   float t = 1.0f / (1.0f + 0.2316419f * z);
-  return q * t * (0.31938153f + t * (-0.356563782f + t * (1.781477937f + t * (-1.821255978f + t * 1.330274429f))));
+  return q * t
+         * (0.31938153f
+            + t * (-0.356563782f + t * (1.781477937f + t * (-1.821255978f + t * 1.330274429f))));
 }
 
-/* Mean square departure of f from f (b) and its mean, in units of sigma, for a field @b and a floor @t, both in sigma. */
+/* Mean square departure of f from f (b) and its mean, in units of sigma, for a field @b and a
+ * floor @t, both in sigma. */
 static inline void
 departure (float b, float t, float *v, float *shift)
 {
@@ -131,7 +154,8 @@ add_moment (Moments *m, double v, double shift, const double u[3])
   m->vrr[5] += y * u[2];
 }
 
-/* The last chunk is filled up with pixels that add nothing. A pixel without noise has one so small that it does not matter. */
+/* The last chunk is filled up with pixels that add nothing. A pixel without noise has one so
+ * small that it does not matter. */
 static void
 fill_chunk (Chunk *chunk, const TfSampled *samples, const float *smooth, guint n)
 {
@@ -150,7 +174,8 @@ fill_chunk (Chunk *chunk, const TfSampled *samples, const float *smooth, guint n
 }
 
 static void
-add_chunk (const Chunk *chunk, const TfMaskPixel *pixels, guint n, Moments moments[2], double *noise)
+add_chunk (const Chunk *chunk, const TfMaskPixel *pixels, guint n, Moments moments[2],
+           double *noise)
 {
   for (guint k = 0; k < n; k++)
     {
@@ -174,7 +199,8 @@ scale_moments (Moments *m)
 }
 
 static void
-add_up (const TfRegionSamples *samples, const float *smooth, double rest, Moments moments[2], double *noise_flux)
+add_up (const TfRegionSamples *samples, const float *smooth, double rest, Moments moments[2],
+        double *noise_flux)
 {
   g_autofree Chunk *chunk = g_new (Chunk, 1);
   double noise = 0.0;
@@ -193,8 +219,9 @@ add_up (const TfRegionSamples *samples, const float *smooth, double rest, Moment
 static double
 project (const double m[6], const double a[3], const double b[3])
 {
-  return m[0] * a[0] * b[0] + m[1] * a[1] * b[1] + m[2] * a[2] * b[2] + m[3] * (a[0] * b[1] + a[1] * b[0])
-         + m[4] * (a[0] * b[2] + a[2] * b[0]) + m[5] * (a[1] * b[2] + a[2] * b[1]);
+  return m[0] * a[0] * b[0] + m[1] * a[1] * b[1] + m[2] * a[2] * b[2]
+         + m[3] * (a[0] * b[1] + a[1] * b[0]) + m[4] * (a[0] * b[2] + a[2] * b[0])
+         + m[5] * (a[1] * b[2] + a[2] * b[1]);
 }
 
 static double
@@ -245,8 +272,8 @@ correlate (Moments *m, double correlation)
 }
 
 void
-tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double sine_mean, TfSpread *spread,
-                 double *noise_flux)
+tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double sine_mean,
+                 TfSpread *spread, double *noise_flux)
 {
   Moments moments[2] = { 0 };
   Place places[2];
@@ -261,11 +288,13 @@ tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double sine
       places[sign] = pole_place (axis, sign, m);
       const double *c = places[sign].c, *shift = places[sign].shift;
       spread->flux[sign] = hypot (sqrt (m->v), m->shift);
-      spread->place[sign] = axis->has[sign] ? sqrt (c[0] + c[1] + shift[0] * shift[0] + shift[1] * shift[1])
-                                            : (double)NAN;
+      spread->place[sign] = axis->has[sign]
+                                ? sqrt (c[0] + c[1] + shift[0] * shift[0] + shift[1] * shift[1])
+                                : (double)NAN;
       dipole += m->vrr[2] - 2.0 * sine_mean * m->vz + sine_mean * sine_mean * m->v;
       dipole_shift += (sign == TF_POSITIVE ? 1.0 : -1.0) * (m->shift_r[2] - sine_mean * m->shift);
     }
-  spread->dipole = 3.0 * hypot (sqrt (MAX (0.0, dipole)), dipole_shift) / (4.0 * TF_PI * radius * radius * 1e16);
+  spread->dipole = 3.0 * hypot (sqrt (MAX (0.0, dipole)), dipole_shift)
+                   / (4.0 * TF_PI * radius * radius * 1e16);
   axis_spread (axis, places, spread);
 }

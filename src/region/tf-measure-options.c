@@ -17,11 +17,13 @@ static const char *const tilt_forms[] = { "planar", "great-circle", NULL };
 
 const TfOption tf_measure_options[] = {
   { "field", TF_OPTION_CHOICE, "", TF_FIELD_USED_RADIAL, 0, 2, field_names,
-    N_ ("field that is summed: radial (line-of-sight field over mu; a radial product as it is), as observed, or the radial field of the "
+    N_ ("field that is summed: radial (line-of-sight field over mu; a radial product as it is), as "
+        "observed, or the radial field of the "
         "potential field that shows the observed one (Leka, Barnes & Wagner 2017)"),
     AT (field_used) },
   { "floor-kind", TF_OPTION_CHOICE, "", TF_FLOOR_LOCAL, 0, 1, floor_names,
-    N_ ("local: a floor on the observed field; even: one floor on the field used, the same all over the disk"),
+    N_ ("local: a floor on the observed field; even: one floor on the field used, the same all "
+        "over the disk"),
     AT (floor_kind) },
   { "floor-sigma", TF_OPTION_NUMBER, "sigma", 3.0, 0.0, 20.0, NULL,
     N_ ("local floor in units of the noise where no floor in gauss is given"), AT (floor_sigma) },
@@ -30,16 +32,19 @@ const TfOption tf_measure_options[] = {
   { "mu-min", TF_OPTION_NUMBER, "", 0.17, 0.05, 0.95, NULL,
     N_ ("pixels nearer the limb than this mu are left out"), AT (mu_min) },
   { "tilt-form", TF_OPTION_CHOICE, "", 0, 0, 1, tilt_forms,
-    N_ ("planar: with the cosine of the mean latitude; great-circle: bearing at the midpoint of the poles"),
+    N_ ("planar: with the cosine of the mean latitude; great-circle: bearing at the midpoint of "
+        "the poles"),
     AT (tilt_form) },
   { "rotation", TF_OPTION_CHOICE, "", 0, 0, 100, tf_rotation_names,
     N_ ("rotation law that carries an outline to the time of the frame"), AT (law) },
   { "scale", TF_OPTION_NUMBER, "", (double)NAN, 0.05, 20.0, NULL,
-    N_ ("factor that turns the instrument's field into a common one; not given: not scaled"), AT (scale) },
+    N_ ("factor that turns the instrument's field into a common one; not given: not scaled"),
+    AT (scale) },
   { "strong-floors", TF_OPTION_NUMBER, "floors", 3.0, 1.5, 20.0, NULL,
     N_ ("strong field, for the second witness, in units of the floor"), AT (strong_floors) },
   { "piece-share", TF_OPTION_NUMBER, "", 0.15, 0.01, 0.5, NULL,
-    N_ ("share of the flux from which a part of one polarity counts as a piece"), AT (piece_share) },
+    N_ ("share of the flux from which a part of one polarity counts as a piece"),
+    AT (piece_share) },
   { "smooth", TF_OPTION_NUMBER, "pixel", 0.9, 0.5, 5.0, NULL,
     N_ ("sigma of the Gaussian that smooths the field of the noise term"), AT (smooth_px) },
   { "floor-step", TF_OPTION_NUMBER, "", 0.2, 0.01, 0.5, NULL,
@@ -54,15 +59,17 @@ const TfOption tf_measure_options[] = {
     N_ ("unsigned flux below which a region counts as ephemeral"), AT (ephemeral_mx) },
   { "realisations", TF_OPTION_INT, "", 0, 0, 10000, NULL,
     N_ ("seeded noise realisations for the noise term; 0: by its formula"), AT (realisations) },
-  { "seed", TF_OPTION_INT, "", 1, 0, G_MAXINT, NULL, N_ ("seed of the noise realisations"), AT (seed) },
+  { "seed", TF_OPTION_INT, "", 1, 0, G_MAXINT, NULL, N_ ("seed of the noise realisations"),
+    AT (seed) },
   { "potential-step", TF_OPTION_NUMBER, "Mm", 1.0, 0.2, 20.0, NULL,
     N_ ("distance of the nodes of the potential field's grid"), AT (potential_step_mm) },
   { "potential-margin", TF_OPTION_NUMBER, "Mm", 60.0, 0.0, 400.0, NULL,
-    N_ ("surroundings of the region that the potential field's box holds, on all sides"), AT (potential_margin_mm) },
+    N_ ("surroundings of the region that the potential field's box holds, on all sides"),
+    AT (potential_margin_mm) },
   { NULL },
 };
 
-G_DEFINE_QUARK (tf-region-error-quark, tf_region_error)
+G_DEFINE_QUARK (tf - region - error - quark, tf_region_error)
 
 void
 tf_measure_params_init (TfMeasureParams *params)

@@ -4,13 +4,14 @@
 
 /* The outline and floor terms of the uncertainty.
  *
- * Outline: the region is measured in 16 fixed deformations of its outline; each mixes a shift, a change of size and the first three
- * harmonics, with signs from an orthogonal two-level design (Box & Hunter 1961, Technometrics 3, 311; from memory), so that 16 are
- * enough for the effects of all to add up in the scatter. The root mean square displacement of the line is the
- * amplitude: outline_deg, or outline_share of the outline's radius, whichever is more. The term is 1.4826 times the median absolute deviation.
- * Pixels are read once, in a wider outline that holds them all; only those above the floor are kept, so that a deformation
- * costs one inside test a pixel.
- * Floor: root mean square of the changes at floors 1 +- step.
+ * Outline: the region is measured in 16 fixed deformations of its outline; each mixes a shift,
+ * a change of size and the first three harmonics, with signs from an orthogonal two-level
+ * design (Box & Hunter 1961, Technometrics 3, 311; from memory), so that 16 are enough for the
+ * effects of all to add up in the scatter. The root mean square displacement of the line is
+ * the amplitude: outline_deg, or outline_share of the outline's radius, whichever is more. The
+ * term is 1.4826 times the median absolute deviation. Pixels are read once, in a wider outline
+ * that holds them all; only those above the floor are kept, so that a deformation costs one
+ * inside test a pixel. Floor: root mean square of the changes at floors 1 +- step.
  */
 
 #include <math.h>
@@ -21,12 +22,16 @@
 #include "tf-fill-private.h"
 #include "tf-measure-private.h"
 
-enum { DEFORMATIONS = 16 };
+enum
+{
+  DEFORMATIONS = 16
+};
 /* Shifts and harmonics together move no point by more amplitudes than this. */
 static const double REACH = 2.3;
 
-/* What is mixed: each part's share of the amplitude, and the run's bits whose parity is its sign. The squares of the shares, shifts
- * and harmonics halved (their mean over the angle), add up to 1. */
+/* What is mixed: each part's share of the amplitude, and the run's bits whose parity is its
+ * sign. The squares of the shares, shifts and harmonics halved (their mean over the angle),
+ * add up to 1. */
 typedef enum
 {
   PART_SIZE,
@@ -46,7 +51,8 @@ static const struct
   double share;
   guint bits;
 } parts[N_PARTS] = {
-  { 0.60, 1 }, { 0.50, 2 }, { 0.50, 4 }, { 0.30, 8 }, { 0.30, 7 }, { 0.42, 11 }, { 0.42, 13 }, { 0.36, 14 }, { 0.36, 15 },
+  { 0.60, 1 },  { 0.50, 2 },  { 0.50, 4 },  { 0.30, 8 },  { 0.30, 7 },
+  { 0.42, 11 }, { 0.42, 13 }, { 0.36, 14 }, { 0.36, 15 },
 };
 
 static double
@@ -58,7 +64,8 @@ part (guint run, Part which)
   return odd ? -parts[which].share : parts[which].share;
 }
 
-/* @radius: of a circle of the outline's area, deg, so that a change of size moves the line by its share. */
+/* @radius: of a circle of the outline's area, deg, so that a change of size moves the line by
+ * its share. */
 static TfOutline *
 deform (const TfOutline *outline, guint run, double amplitude, double radius)
 {
@@ -70,8 +77,8 @@ deform (const TfOutline *outline, guint run, double amplitude, double radius)
       phase[k] = atan2 (s, c) / (k + 1);
     }
   double scale = MAX (0.1, 1.0 + part (run, PART_SIZE) * amplitude / radius);
-  return tf_outline_deform (outline, amplitude * part (run, PART_WEST), amplitude * part (run, PART_NORTH), scale, size,
-                            phase);
+  return tf_outline_deform (outline, amplitude * part (run, PART_WEST),
+                            amplitude * part (run, PART_NORTH), scale, size, phase);
 }
 
 static gint
@@ -105,7 +112,8 @@ deviation (double values[DEFORMATIONS])
   return 1.4826 * median (values, DEFORMATIONS);
 }
 
-/* Places: the differences are distances already; of two normal axes the root mean square is 1.2011 times the median. */
+/* Places: the differences are distances already; of two normal axes the root mean square is
+ * 1.2011 times the median. */
 static double
 middle_distance (const double values[DEFORMATIONS])
 {
@@ -131,7 +139,8 @@ static void
 keep_pixels (Kept *kept, const TfRegionSamples *samples)
 {
   guint most = MAX (samples->n, 1);
-  *kept = (Kept){ 0, g_new (Unit, most), g_new (double, most), g_new (double, most), g_new (guint8, most) };
+  *kept = (Kept){ 0, g_new (Unit, most), g_new (double, most), g_new (double, most),
+                  g_new (guint8, most) };
   for (guint k = 0; k < samples->n; k++)
     {
       const TfSampled *s = &samples->samples[k];
@@ -160,11 +169,12 @@ sum_inside (const Kept *kept, const TfOutline *outline, TfSum sums[2])
   tf_fill_row (fill, (const Unit *)kept->unit, kept->n, kept->inside);
   for (guint k = 0; k < kept->n; k++)
     if (kept->inside[k])
-      tf_sum_add (&sums[kept->flux[k] > 0.0 ? TF_POSITIVE : TF_NEGATIVE], kept->unit[k], kept->area[k],
-                  fabs (kept->flux[k]));
+      tf_sum_add (&sums[kept->flux[k] > 0.0 ? TF_POSITIVE : TF_NEGATIVE], kept->unit[k],
+                  kept->area[k], fabs (kept->flux[k]));
 }
 
-/* A bound below every floor there is on the frame, as observed; 0 where the field is not the observed one. */
+/* A bound below every floor there is on the frame, as observed; 0 where the field is not the
+ * observed one. */
 static float
 least_floor (const TfFrame *frame, const TfMeasureParams *params, const TfPotential *potential)
 {
@@ -175,7 +185,8 @@ least_floor (const TfFrame *frame, const TfMeasureParams *params, const TfPotent
   if (potential != NULL)
     return 0.0f;
   if (params->floor_kind == TF_FLOOR_EVEN)
-    least = tf_region_even_floor (frame, params) * (tf_region_divides (frame, params) ? params->mu_min : 1.0);
+    least = tf_region_even_floor (frame, params)
+            * (tf_region_divides (frame, params) ? params->mu_min : 1.0);
   else if (isnan (least))
     {
       least = n > 0 ? (double)INFINITY : 0.0;
@@ -187,12 +198,13 @@ least_floor (const TfFrame *frame, const TfMeasureParams *params, const TfPotent
 
 /* Left-out areas of the wide cap are not cut: each deformation has its own. */
 static void
-open_kept (Kept *kept, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-           const TfPotential *potential, double reach)
+open_kept (Kept *kept, const TfFrame *frame, const TfOutline *outline,
+           const TfMeasureParams *params, const TfPotential *potential, double reach)
 {
   double lon, lat, radius;
   tf_outline_get_cap (outline, &lon, &lat, &radius);
-  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_outline_get_time (outline), lon, lat, MIN (radius + reach, 80.0), 0);
+  g_autoptr (TfOutline) cap
+      = tf_outline_new_cap (tf_outline_get_time (outline), lon, lat, MIN (radius + reach, 80.0), 0);
   g_autoptr (TfMask) mask = tf_mask_new_above (frame, cap, params->mu_min, (guint)params->law,
                                                least_floor (frame, params, potential));
   g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
@@ -220,8 +232,9 @@ settle (Trials *trials, TfSpread *spread)
 }
 
 void
-tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-                        const TfPotential *potential, TfSpread *spread)
+tf_region_outline_term (const TfFrame *frame, const TfOutline *outline,
+                        const TfMeasureParams *params, const TfPotential *potential,
+                        TfSpread *spread)
 {
   double lon, lat, radius, radius_mm = tf_frame_get_geometry (frame)->radius_mm;
   tf_outline_get_cap (outline, &lon, &lat, &radius);
@@ -233,7 +246,8 @@ tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const Tf
   TfSum sums[2] = { 0 };
   TfAxis base, axis;
   mean = MAX (mean, 0.1);
-  open_kept (&kept, frame, outline, params, potential, amplitude * (REACH + parts[PART_SIZE].share * radius / mean));
+  open_kept (&kept, frame, outline, params, potential,
+             amplitude * (REACH + parts[PART_SIZE].share * radius / mean));
   sum_inside (&kept, outline, sums);
   tf_axis_from_sums (&base, sums, outline, radius_mm, circle);
   for (guint k = 0; k < DEFORMATIONS; k++)

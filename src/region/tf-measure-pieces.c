@@ -2,9 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Pieces: connected parts of one polarity. They are looked for on cells of about 1.5 Mm, so that a pole that a fine frame
- * resolves into grains is one piece on every frame. A cell belongs to a polarity when that polarity's net flux above the floor is at
- * least half of what the whole cell would hold at the floor; cells touch by sides and corners. */
+/* Pieces: connected parts of one polarity. They are looked for on cells of about 1.5 Mm, so
+ * that a pole that a fine frame resolves into grains is one piece on every frame. A cell
+ * belongs to a polarity when that polarity's net flux above the floor is at least half of what
+ * the whole cell would hold at the floor; cells touch by sides and corners. */
 
 #include <math.h>
 #include <string.h>
@@ -83,7 +84,8 @@ fill_cells (Field *field, const TfRegionSamples *samples)
     }
 }
 
-/* Takes the cell and all that touches it, by a stack of cells to look at; visited cells get sign 0. */
+/* Takes the cell and all that touches it, by a stack of cells to look at; visited cells get
+ * sign 0. */
 static void
 flood (Field *field, guint start, GArray *stack)
 {
@@ -166,7 +168,8 @@ tf_region_pieces (const TfRegionSamples *samples, double flux_unsigned, TfPieces
   g_array_sort (field.pieces, by_flux);
   pieces->n = 0;
   for (guint k = 0; k < field.pieces->len; k++)
-    pieces->n += g_array_index (field.pieces, Piece, k).flux >= samples->params->piece_share * flux_unsigned;
+    pieces->n += g_array_index (field.pieces, Piece, k).flux
+                 >= samples->params->piece_share * flux_unsigned;
   pieces->witness = find_witness (field.pieces);
   g_array_unref (field.pieces);
   g_free (field.cells);

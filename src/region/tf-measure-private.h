@@ -5,9 +5,10 @@
 
 /* What the files of the measurement share.
  *
- * Field, floor and sigma of a sample are in (scaled) gauss as observed, whatever field is used; a sample's weight turns gauss
- * as observed into Mx: area / mu for the radial field of a line-of-sight frame, else area. So a floor on the radial field is
- * floor * mu here, and noise is always that of the observed field. Index 0 is the positive polarity, 1 the negative.
+ * Field, floor and sigma of a sample are in (scaled) gauss as observed, whatever field is
+ * used; a sample's weight turns gauss as observed into Mx: area / mu for the radial field of a
+ * line-of-sight frame, else area. So a floor on the radial field is floor * mu here, and noise
+ * is always that of the observed field. Index 0 is the positive polarity, 1 the negative.
  */
 
 #include <glib.h>
@@ -55,18 +56,18 @@ typedef struct
   guint n;
   const TfMaskPixel *pixels;
   TfSampled *samples;
-  float *added;     /* G as observed: what the potential estimate adds, already in the samples' field; NULL for the others */
+  float *added; /* G as observed: what the potential adds, in the field already; else NULL */
   TfExtreme extreme[2];
-  double mean_mu;   /* maps: 1 */
+  double mean_mu;    /* maps: 1 */
   double mean_abs_z; /* of the unit vectors */
 } TfRegionSamples;
 
 typedef struct
 {
-  double flux;    /* Mx */
-  double sum[3];  /* of flux * unit vector */
-  double area;    /* Mm2 */
-  double area_z;  /* of area * sin (latitude) */
+  double flux;   /* Mx */
+  double sum[3]; /* of flux * unit vector */
+  double area;   /* Mm2 */
+  double area_z; /* of area * sin (latitude) */
   guint n;
 } TfSum;
 
@@ -81,11 +82,11 @@ typedef struct
   gboolean has[2], pinned[2];
   double flux[2];
   double unit[2][3], lon[2], lat[2];
-  double radius[2];    /* rms about the pole, deg */
-  int west;            /* index of the western pole; -1 without two poles */
-  double dx, dy;       /* leading - following: longitude * cos (mean latitude), latitude; deg */
+  double radius[2]; /* rms about the pole, deg */
+  int west;         /* index of the western pole; -1 without two poles */
+  double dx, dy;    /* leading - following: longitude * cos (mean latitude), latitude; deg */
   double bearing, tilt, separation;
-  double dipole;       /* G */
+  double dipole; /* G */
 } TfAxis;
 
 /* One-sigma of one term. */
@@ -96,8 +97,9 @@ typedef struct
 
 /* tf-measure-sums.c */
 /** tf_region_samples_new: @potential: (nullable): when it is the field used. */
-TfRegionSamples *tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params,
-                                        const TfPotential *potential);
+TfRegionSamples *
+tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params,
+                       const TfPotential *potential);
 void tf_region_samples_free (TfRegionSamples *samples);
 void tf_region_sums (const TfRegionSamples *samples, TfSums *sums);
 static inline void
@@ -116,42 +118,47 @@ double tf_region_even_floor (const TfFrame *frame, const TfMeasureParams *params
 double tf_region_scale (const TfMeasureParams *params);
 double tf_region_sigma (const TfFrame *frame, double mu, double abs_z);
 gboolean tf_region_divides (const TfFrame *frame, const TfMeasureParams *params);
-void tf_axis_from_sums (TfAxis *axis, const TfSum sums[2], const TfOutline *outline, double radius_mm,
-                        gboolean great_circle);
+void tf_axis_from_sums (TfAxis *axis, const TfSum sums[2], const TfOutline *outline,
+                        double radius_mm, gboolean great_circle);
 /** tf_axis_difference: absolute differences, axial for the tilt; NaN where one has no value. */
 void tf_axis_difference (const TfAxis *a, const TfAxis *b, TfSpread *spread);
 
 /* tf-measure-noise.c */
 /** tf_region_noise: the noise term; @noise_flux: unsigned flux expected of noise alone, Mx. */
-void tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double sine_mean, TfSpread *spread,
-                      double *noise_flux);
+void tf_region_noise (const TfRegionSamples *samples, const TfAxis *axis, double sine_mean,
+                      TfSpread *spread, double *noise_flux);
 /** tf_region_realise: the same from seeded realisations of the smoothed field. */
 void tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfSpread *spread);
-/** tf_region_smooth: the field, scaled, smoothed by params->smooth_px; one value a sample. @rest: what part of a pixel's sigma is no
- * longer in it: sqrt (1 - sum of the kernel's squares). */
+/** tf_region_smooth: the field, scaled, smoothed by params->smooth_px; one value a sample.
+ * @rest: what part of a pixel's sigma is no longer in it: sqrt (1 - sum of the kernel's
+ * squares). */
 float *tf_region_smooth (const TfRegionSamples *samples, double *rest);
 
 /* tf-measure-outline.c */
 /** tf_region_floor_term: Returns: whether the western pole is another at one of the floors. */
-gboolean tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
-                               const TfOutline *outline, TfSpread *spread);
-void tf_region_outline_term (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-                             const TfPotential *potential, TfSpread *spread);
+gboolean tf_region_floor_term (const TfRegionSamples *samples, const TfSums *sums,
+                               const TfAxis *axis, const TfOutline *outline, TfSpread *spread);
+void tf_region_outline_term (const TfFrame *frame, const TfOutline *outline,
+                             const TfMeasureParams *params, const TfPotential *potential,
+                             TfSpread *spread);
 
 /* tf-measure-pieces.c */
 typedef struct
 {
-  guint n;         /* with at least piece_share of the flux */
-  int witness;     /* the western of the strongest piece of each polarity */
+  guint n;     /* with at least piece_share of the flux */
+  int witness; /* the western of the strongest piece of each polarity */
 } TfPieces;
 void tf_region_pieces (const TfRegionSamples *samples, double flux_unsigned, TfPieces *pieces);
-/** tf_axis_witness: the polarity whose pole is west; 0 when nearer than @least deg, ABSENT without two poles. */
+/** tf_axis_witness: the polarity whose pole is west; 0 when nearer than @least deg, ABSENT
+ * without two poles. */
 int tf_axis_witness (const TfAxis *axis, double least);
 
 /* tf-measure.c */
-/** tf_region_measure: tf_measure_masked with the third witness told by a leading spot, unless @spot_witness is TF_WITNESS_ABSENT. */
-gboolean tf_region_measure (TfMeasure *measure, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
-                            const TfMeasureParams *params, int spot_witness, GError **error);
+/** tf_region_measure: tf_measure_masked with the third witness told by a leading spot, unless
+ * @spot_witness is TF_WITNESS_ABSENT. */
+gboolean tf_region_measure (TfMeasure *measure, const TfFrame *frame, const TfMask *mask,
+                            const TfOutline *outline, const TfMeasureParams *params,
+                            int spot_witness, GError **error);
 
 /* tf-measure-cautions.c */
 void tf_region_cautions (TfMeasure *measure, const TfRegionSamples *samples, const TfAxis *axis);

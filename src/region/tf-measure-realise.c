@@ -2,8 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The noise term by trial: normal noise of the frame's sigma is laid over the smoothed field, the region is measured anew,
- * and the root mean square departure from the measure of the smoothed field itself is taken. Equal seeds give equal numbers on every machine (GRand is a fixed generator). */
+/* The noise term by trial: normal noise of the frame's sigma is laid over the smoothed field,
+ * the region is measured anew, and the root mean square departure from the measure of the
+ * smoothed field itself is taken. Equal seeds give equal numbers on every machine (GRand is a
+ * fixed generator). */
 
 #include <math.h>
 
@@ -39,15 +41,16 @@ draw (Gauss *gauss)
 
 /* @rest: share of sigma that is laid on; @gauss: NULL for the smoothed field as it is. */
 static void
-realise (const TfRegionSamples *samples, const float *smooth, double rest, Gauss *gauss, TfSum sums[2])
+realise (const TfRegionSamples *samples, const float *smooth, double rest, Gauss *gauss,
+         TfSum sums[2])
 {
   for (guint k = 0; k < samples->n; k++)
     {
       const TfSampled *s = &samples->samples[k];
       double d = smooth[k] + (gauss != NULL ? rest * s->sigma * draw (gauss) : 0.0);
       if (fabs (d) >= s->floor)
-        tf_sum_add (&sums[d > 0.0 ? TF_POSITIVE : TF_NEGATIVE], samples->pixels[k].unit, samples->pixels[k].area_mm2,
-                    fabs (d) * s->weight);
+        tf_sum_add (&sums[d > 0.0 ? TF_POSITIVE : TF_NEGATIVE], samples->pixels[k].unit,
+                    samples->pixels[k].area_mm2, fabs (d) * s->weight);
     }
 }
 
@@ -73,14 +76,16 @@ scatter_rms (const Scatter *scatter, double factor)
   if (scatter->n < 2.0)
     return NAN;
   double mean = scatter->sum / scatter->n;
-  double variance = MAX (0.0, scatter->sum2 / scatter->n - mean * mean) * scatter->n / (scatter->n - 1.0);
+  double variance
+      = MAX (0.0, scatter->sum2 / scatter->n - mean * mean) * scatter->n / (scatter->n - 1.0);
   return sqrt (factor * variance + mean * mean);
 }
 
 void
 tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfSpread *spread)
 {
-  Scatter flux[2] = { 0 }, west[2] = { 0 }, north[2] = { 0 }, tilt = { 0 }, separation = { 0 }, dx = { 0 }, dipole = { 0 };
+  Scatter flux[2] = { 0 }, west[2] = { 0 }, north[2] = { 0 }, tilt = { 0 }, separation = { 0 },
+          dx = { 0 }, dipole = { 0 };
   double radius = tf_frame_get_geometry (samples->frame)->radius_mm;
   double factor = tf_frame_noise_correlation (samples->frame);
   double rest;
@@ -102,7 +107,8 @@ tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfS
         {
           scatter_add (&flux[sign], d.flux[sign]);
           scatter_add (&north[sign], axis.lat[sign] - first.lat[sign]);
-          scatter_add (&west[sign], tf_wrap_180 (axis.lon[sign] - first.lon[sign]) * cos (first.lat[sign] * TF_DEG));
+          scatter_add (&west[sign], tf_wrap_180 (axis.lon[sign] - first.lon[sign])
+                                        * cos (first.lat[sign] * TF_DEG));
         }
       scatter_add (&tilt, d.tilt);
       scatter_add (&separation, d.separation);
@@ -112,7 +118,8 @@ tf_region_realise (const TfRegionSamples *samples, const TfOutline *outline, TfS
   for (guint sign = 0; sign < 2; sign++)
     {
       spread->flux[sign] = scatter_rms (&flux[sign], factor);
-      spread->place[sign] = hypot (scatter_rms (&west[sign], factor), scatter_rms (&north[sign], factor));
+      spread->place[sign]
+          = hypot (scatter_rms (&west[sign], factor), scatter_rms (&north[sign], factor));
     }
   spread->tilt = scatter_rms (&tilt, factor);
   spread->separation = scatter_rms (&separation, factor);

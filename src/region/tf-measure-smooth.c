@@ -2,15 +2,18 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The field about a region smoothed by a small Gaussian: pixels outside the outline take part, pixels without a value
- * do not (the kernel is made whole over the others). */
+/* The field about a region smoothed by a small Gaussian: pixels outside the outline take part,
+ * pixels without a value do not (the kernel is made whole over the others). */
 
 #include <math.h>
 #include <string.h>
 
 #include "tf-measure-private.h"
 
-enum { MAX_REACH = 20 };
+enum
+{
+  MAX_REACH = 20
+};
 
 typedef struct
 {
@@ -33,7 +36,8 @@ open_patch (Patch *patch, const TfRegionSamples *samples, guint reach, float sca
   patch->half = g_new (float, n);
   for (guint y = 0; y < patch->height; y++)
     {
-      const float *row = tf_frame_get_pixels (samples->frame) + (gsize)(patch->y0 + y) * frame_w + patch->x0;
+      const float *row
+          = tf_frame_get_pixels (samples->frame) + (gsize)(patch->y0 + y) * frame_w + patch->x0;
       float *out = patch->field + (gsize)y * patch->width;
       for (guint x = 0; x < patch->width; x++)
         {
@@ -47,7 +51,8 @@ open_patch (Patch *patch, const TfRegionSamples *samples, guint reach, float sca
   patch->weight = g_new (float, n);
   for (guint y = 0; y < patch->height; y++)
     {
-      const float *row = tf_frame_get_pixels (samples->frame) + (gsize)(patch->y0 + y) * frame_w + patch->x0;
+      const float *row
+          = tf_frame_get_pixels (samples->frame) + (gsize)(patch->y0 + y) * frame_w + patch->x0;
       for (guint x = 0; x < patch->width; x++)
         patch->weight[(gsize)y * patch->width + x] = isfinite (row[x]) ? 1.0f : 0.0f;
     }
@@ -73,7 +78,8 @@ blur_rows (const float *in, float *out, guint width, guint height, const float *
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-blur_columns (const float *in, float *out, guint width, guint height, const float *kernel, int reach)
+blur_columns (const float *in, float *out, guint width, guint height, const float *kernel,
+              int reach)
 {
   for (int y = 0; y < (int)height; y++)
     {
@@ -128,7 +134,8 @@ tf_region_smooth (const TfRegionSamples *samples, double *rest)
     blur (patch.weight, &patch, kernel, reach);
   for (guint k = 0; k < samples->n; k++)
     {
-      gsize at = (gsize)(samples->pixels[k].y - patch.y0) * patch.width + (samples->pixels[k].x - patch.x0);
+      gsize at = (gsize)(samples->pixels[k].y - patch.y0) * patch.width
+                 + (samples->pixels[k].x - patch.x0);
       out[k] = patch.gaps ? patch.field[at] / patch.weight[at] : patch.field[at];
       if (samples->added != NULL)
         out[k] += samples->added[k];

@@ -7,7 +7,10 @@
 #include "tf-constants.h"
 #include "tf-measure-private.h"
 
-enum { SIGMA_STEPS = 512 };
+enum
+{
+  SIGMA_STEPS = 512
+};
 static const double CM2_IN_MM2 = 1e16;
 
 double
@@ -20,7 +23,8 @@ tf_region_scale (const TfMeasureParams *params)
 gboolean
 tf_region_divides (const TfFrame *frame, const TfMeasureParams *params)
 {
-  return params->field_used != TF_FIELD_USED_OBSERVED && !tf_geometry_is_map (tf_frame_get_geometry (frame))
+  return params->field_used != TF_FIELD_USED_OBSERVED
+         && !tf_geometry_is_map (tf_frame_get_geometry (frame))
          && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL;
 }
 
@@ -31,7 +35,8 @@ tf_region_sigma (const TfFrame *frame, double mu, double abs_z)
   return tf_frame_noise_at (frame, map ? asin (MIN (abs_z, 1.0)) / TF_DEG : mu);
 }
 
-/* On a map and in a radial product noise does not grow by 1/mu: the value at mu 0.5, or at 30 deg of latitude. */
+/* On a map and in a radial product noise does not grow by 1/mu: the value at mu 0.5, or at 30
+ * deg of latitude. */
 double
 tf_even_floor (const TfFrame *frame)
 {
@@ -118,14 +123,16 @@ add_potential (TfRegionSamples *s, const TfPotential *potential)
   for (guint k = 0; k < s->n; k++)
     {
       const TfMaskPixel *pixel = &s->pixels[k];
-      double field = pixel->mu * tf_potential_radial (potential, pixel->unit, pixel->field, pixel->mu);
+      double field
+          = pixel->mu * tf_potential_radial (potential, pixel->unit, pixel->field, pixel->mu);
       s->added[k] = (float)(scale * (field - pixel->field));
       s->samples[k].field += s->added[k];
     }
 }
 
 TfRegionSamples *
-tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params, const TfPotential *potential)
+tf_region_samples_new (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params,
+                       const TfPotential *potential)
 {
   TfRegionSamples *s = g_new0 (TfRegionSamples, 1);
   s->frame = frame;
@@ -162,8 +169,9 @@ merge (TfSum *to, const TfSum *from)
   to->n += from->n;
 }
 
-/* One pass: each pixel goes into the highest level it reaches; then the levels are summed from the top. Levels may not
- * be in order when strong_floors < 1 + floor_step: the options' ranges keep them so. A pixel at a floor of 0 G belongs to every level. */
+/* One pass: each pixel goes into the highest level it reaches; then the levels are summed from
+ * the top. Levels may not be in order when strong_floors < 1 + floor_step: the options' ranges
+ * keep them so. A pixel at a floor of 0 G belongs to every level. */
 void
 tf_region_sums (const TfRegionSamples *samples, TfSums *sums)
 {
@@ -178,15 +186,16 @@ tf_region_sums (const TfRegionSamples *samples, TfSums *sums)
       if (!(size >= low * floor) || !(size > 0.0f))
         continue;
       guint level = (size >= floor) + (size >= high * floor) + (size >= strong * floor);
-      tf_sum_add (&sums->at[level][s->field > 0.0f ? TF_POSITIVE : TF_NEGATIVE], samples->pixels[k].unit,
-                  samples->pixels[k].area_mm2, (double)size * s->weight);
+      tf_sum_add (&sums->at[level][s->field > 0.0f ? TF_POSITIVE : TF_NEGATIVE],
+                  samples->pixels[k].unit, samples->pixels[k].area_mm2, (double)size * s->weight);
     }
   for (guint level = TF_N_LEVELS - 1; level > 0; level--)
     for (guint sign = 0; sign < 2; sign++)
       merge (&sums->at[level - 1][sign], &sums->at[level][sign]);
 }
 
-/* A pole of one pixel still has that pixel's own extent: a uniform square of side a has rms radius a / sqrt (6). */
+/* A pole of one pixel still has that pixel's own extent: a uniform square of side a has rms
+ * radius a / sqrt (6). */
 static double
 rms_radius (const TfSum *sum, double length, double radius_mm)
 {
@@ -197,7 +206,8 @@ rms_radius (const TfSum *sum, double length, double radius_mm)
 static void
 find_pole (TfAxis *axis, guint sign, const TfSum *sum, double radius_mm)
 {
-  double length = sqrt (sum->sum[0] * sum->sum[0] + sum->sum[1] * sum->sum[1] + sum->sum[2] * sum->sum[2]);
+  double length
+      = sqrt (sum->sum[0] * sum->sum[0] + sum->sum[1] * sum->sum[1] + sum->sum[2] * sum->sum[2]);
   axis->flux[sign] = sum->flux;
   axis->has[sign] = length > 0.0;
   axis->radius[sign] = axis->has[sign] ? rms_radius (sum, length, radius_mm) : (double)NAN;
@@ -223,8 +233,8 @@ apply_pins (TfAxis *axis, const TfOutline *outline)
     }
 }
 
-/* 3 / (4 pi R^2) times the sum of B_r sin (latitude) dA, after the net flux is taken away evenly from the area above the
- * floor; Mx / cm2 = G. */
+/* 3 / (4 pi R^2) times the sum of B_r sin (latitude) dA, after the net flux is taken away
+ * evenly from the area above the floor; Mx / cm2 = G. */
 static double
 dipole (const TfSum sums[2], double radius_mm)
 {
@@ -251,14 +261,16 @@ tf_axis_from_sums (TfAxis *axis, const TfSum sums[2], const TfOutline *outline, 
     apply_pins (axis, outline);
   if (!axis->has[0] || !axis->has[1])
     return;
-  axis->west = tf_wrap_180 (axis->lon[TF_POSITIVE] - axis->lon[TF_NEGATIVE]) >= 0.0 ? TF_POSITIVE : TF_NEGATIVE;
+  axis->west = tf_wrap_180 (axis->lon[TF_POSITIVE] - axis->lon[TF_NEGATIVE]) >= 0.0 ? TF_POSITIVE
+                                                                                    : TF_NEGATIVE;
   guint lead = (guint)axis->west, follow = 1 - lead;
   double mean = 0.5 * (axis->lat[lead] + axis->lat[follow]);
   axis->dx = tf_wrap_180 (axis->lon[lead] - axis->lon[follow]) * cos (mean * TF_DEG);
   axis->dy = axis->lat[lead] - axis->lat[follow];
-  axis->separation = tf_sphere_distance (axis->lon[lead], axis->lat[lead], axis->lon[follow], axis->lat[follow]);
-  tf_tilt (axis->lon[lead], axis->lat[lead], axis->lon[follow], axis->lat[follow], great_circle, &axis->bearing,
-           &axis->tilt);
+  axis->separation
+      = tf_sphere_distance (axis->lon[lead], axis->lat[lead], axis->lon[follow], axis->lat[follow]);
+  tf_tilt (axis->lon[lead], axis->lat[lead], axis->lon[follow], axis->lat[follow], great_circle,
+           &axis->bearing, &axis->tilt);
 }
 
 void
@@ -267,9 +279,10 @@ tf_axis_difference (const TfAxis *a, const TfAxis *b, TfSpread *spread)
   for (guint sign = 0; sign < 2; sign++)
     {
       spread->flux[sign] = a->flux[sign] - b->flux[sign];
-      spread->place[sign] = a->has[sign] && b->has[sign]
-                                ? tf_sphere_distance (a->lon[sign], a->lat[sign], b->lon[sign], b->lat[sign])
-                                : (double)NAN;
+      spread->place[sign]
+          = a->has[sign] && b->has[sign]
+                ? tf_sphere_distance (a->lon[sign], a->lat[sign], b->lon[sign], b->lat[sign])
+                : (double)NAN;
     }
   spread->tilt = remainder (a->bearing - b->bearing, 180.0);
   spread->separation = a->separation - b->separation;

@@ -13,7 +13,8 @@
 
 /* Leading polarity is sure beyond this many sigma of the poles' distance in longitude. */
 static const double SURE_SIGMAS = 2.0;
-/* A share of the observed field that the potential estimate leaves unexplained is said above this. */
+/* A share of the observed field that the potential estimate leaves unexplained is said above
+ * this. */
 static const double LEFT_SAID = 0.02;
 
 typedef struct
@@ -37,7 +38,8 @@ tf_measure_copy (TfMeasure *to, const TfMeasure *from)
     tf_notes_add_copy (to->cautions, tf_notes_get (from->cautions, k));
 }
 
-/* Terms in quadrature; a term that is not there (NaN) adds nothing, but if none is there the sum is NaN. */
+/* Terms in quadrature; a term that is not there (NaN) adds nothing, but if none is there the
+ * sum is NaN. */
 static double
 quadrature (double a, double b, double c)
 {
@@ -57,21 +59,24 @@ set_nothing (TfSpread *spread)
 }
 
 static void
-set_pole (TfPole *pole, const TfFrame *frame, const TfAxis *axis, guint sign, const TfSum *sum, const Terms *terms)
+set_pole (TfPole *pole, const TfFrame *frame, const TfAxis *axis, guint sign, const TfSum *sum,
+          const Terms *terms)
 {
   const TfGeometry *g = tf_frame_get_geometry (frame);
   double hemisphere = 2.0 * TF_PI * g->radius_mm * g->radius_mm;
   pole->flux_mx = axis->flux[sign];
   pole->flux_noise_mx = terms->noise.flux[sign];
-  pole->flux_sigma_mx = quadrature (terms->noise.flux[sign], terms->outline.flux[sign], terms->floor.flux[sign]);
+  pole->flux_sigma_mx
+      = quadrature (terms->noise.flux[sign], terms->outline.flux[sign], terms->floor.flux[sign]);
   pole->carrington_lon_deg = axis->lon[sign];
   pole->lon_deg = axis->has[sign] ? tf_geometry_stonyhurst_of (g, axis->lon[sign]) : (double)NAN;
   pole->lat_deg = axis->lat[sign];
   pole->pinned = axis->pinned[sign];
   pole->place_noise_deg = pole->pinned ? 0.0 : terms->noise.place[sign];
-  pole->place_sigma_deg = pole->pinned ? 0.0
-                                       : quadrature (terms->noise.place[sign], terms->outline.place[sign],
-                                                     terms->floor.place[sign]);
+  pole->place_sigma_deg = pole->pinned
+                              ? 0.0
+                              : quadrature (terms->noise.place[sign], terms->outline.place[sign],
+                                            terms->floor.place[sign]);
   pole->rms_radius_deg = axis->radius[sign];
   pole->pixels = sum->n;
   pole->magnetic_area_msh = 1e6 * sum->area / hemisphere;
@@ -109,31 +114,36 @@ set_axis (TfMeasure *m, const TfFrame *frame, const TfAxis *axis, const Terms *t
   m->tilt_terms.total = quadrature (terms->noise.tilt, terms->outline.tilt, terms->floor.tilt);
   m->separation_deg = axis->separation;
   m->separation_noise_deg = terms->noise.separation;
-  m->separation_sigma_deg = quadrature (terms->noise.separation, terms->outline.separation, terms->floor.separation);
+  m->separation_sigma_deg
+      = quadrature (terms->noise.separation, terms->outline.separation, terms->floor.separation);
   m->separation_mm = axis->separation * TF_DEG * radius;
   m->compactness = axis->separation / (axis->radius[0] + axis->radius[1]);
 }
 
 static void
-set_flux (TfMeasure *m, const TfFrame *frame, const TfAxis *axis, const Terms *terms, const TfMeasureParams *params)
+set_flux (TfMeasure *m, const TfFrame *frame, const TfAxis *axis, const Terms *terms,
+          const TfMeasureParams *params)
 {
   double radius = tf_frame_get_geometry (frame)->radius_mm;
   double sum = axis->flux[0] + axis->flux[1];
   m->flux_unsigned_mx = sum;
-  m->imbalance = sum > 0.0 ? (axis->flux[TF_POSITIVE] - axis->flux[TF_NEGATIVE]) / sum : (double)NAN;
+  m->imbalance
+      = sum > 0.0 ? (axis->flux[TF_POSITIVE] - axis->flux[TF_NEGATIVE]) / sum : (double)NAN;
   m->ephemeral = sum < params->ephemeral_mx;
   m->axial_dipole_gauss = axis->dipole;
-  m->axial_dipole_sigma_gauss = quadrature (terms->noise.dipole, terms->outline.dipole, terms->floor.dipole);
+  m->axial_dipole_sigma_gauss
+      = quadrature (terms->noise.dipole, terms->outline.dipole, terms->floor.dipole);
   m->axial_dipole_poles_gauss = NAN;
   if (axis->has[0] && axis->has[1])
-    m->axial_dipole_poles_gauss = 3.0 * 0.5 * sum * (axis->unit[TF_POSITIVE][2] - axis->unit[TF_NEGATIVE][2])
+    m->axial_dipole_poles_gauss = 3.0 * 0.5 * sum
+                                  * (axis->unit[TF_POSITIVE][2] - axis->unit[TF_NEGATIVE][2])
                                   / (4.0 * TF_PI * radius * radius * 1e16);
 }
 
 /* Witness (a) is undecided when the poles' longitudes differ by less than their own one-sigma. */
 static void
-set_witnesses (TfMeasure *m, const TfSums *sums, const TfAxis *axis, const TfPieces *pieces, const Terms *terms,
-               double radius_mm, gboolean circle)
+set_witnesses (TfMeasure *m, const TfSums *sums, const TfAxis *axis, const TfPieces *pieces,
+               const Terms *terms, double radius_mm, gboolean circle)
 {
   TfAxis strong;
   double sigma = quadrature (terms->noise.dx, terms->outline.dx, terms->floor.dx);
@@ -157,7 +167,8 @@ set_method (TfMeasure *m, const TfRegionSamples *samples)
     m->field_used = TF_FIELD_USED_RADIAL;
   m->floor_kind = (TfFloorKind)p->floor_kind;
   m->scale = p->scale;
-  m->noise_gauss = tf_region_scale (p) * tf_region_sigma (samples->frame, samples->mean_mu, samples->mean_abs_z);
+  m->noise_gauss = tf_region_scale (p)
+                   * tf_region_sigma (samples->frame, samples->mean_mu, samples->mean_abs_z);
   if (p->floor_kind == TF_FLOOR_EVEN)
     m->floor_gauss = tf_region_even_floor (samples->frame, p);
   else
@@ -172,12 +183,13 @@ sine_mean (const TfSum sums[2])
 }
 
 static void
-find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const TfSums *sums, const TfAxis *axis,
-            const TfOutline *outline, const TfPotential *potential)
+find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const TfSums *sums,
+            const TfAxis *axis, const TfOutline *outline, const TfPotential *potential)
 {
   const TfMeasureParams *p = samples->params;
   set_nothing (&terms->outline);
-  tf_region_noise (samples, axis, sine_mean (sums->at[TF_LEVEL_BASE]), &terms->noise, &m->noise_flux_mx);
+  tf_region_noise (samples, axis, sine_mean (sums->at[TF_LEVEL_BASE]), &terms->noise,
+                   &m->noise_flux_mx);
   if (p->realisations > 1)
     tf_region_realise (samples, outline, &terms->noise);
   m->leader_flips = tf_region_floor_term (samples, sums, axis, outline, &terms->floor);
@@ -188,10 +200,12 @@ find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const Tf
 static gboolean
 check_params (const TfFrame *frame, const TfMeasureParams *params, GError **error)
 {
-  if (params->field_used == TF_FIELD_USED_POTENTIAL && tf_geometry_is_map (tf_frame_get_geometry (frame))
+  if (params->field_used == TF_FIELD_USED_POTENTIAL
+      && tf_geometry_is_map (tf_frame_get_geometry (frame))
       && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL)
     g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_KIND,
-                         _ ("A map has no line of sight to work a potential field out from: choose the radial field or the field as "
+                         _ ("A map has no line of sight to work a potential field out from: choose "
+                            "the radial field or the field as "
                             "observed."));
   else if (params->strong_floors < 1.0 + params->floor_step)
     g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_OPTION,
@@ -232,10 +246,12 @@ measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline
   set_witnesses (m, &sums, &axis, &pieces, &terms, radius, circle);
   tf_region_cautions (m, samples, &axis);
   if (potential != NULL && tf_potential_get_left (potential) > LEFT_SAID)
-    tf_notes_add (m->cautions, "potential-unsettled", "d", 100.0 * tf_potential_get_left (potential));
+    tf_notes_add (m->cautions, "potential-unsettled", "d",
+                  100.0 * tf_potential_get_left (potential));
 }
 
-/* The potential estimate on a box about the mask's pixels, so that it is the same with and without an outline. */
+/* The potential estimate on a box about the mask's pixels, so that it is the same with and
+ * without an outline. */
 static TfPotential *
 make_potential (const TfFrame *frame, const TfMask *mask, const TfMeasureParams *params)
 {
@@ -252,7 +268,8 @@ make_potential (const TfFrame *frame, const TfMask *mask, const TfMeasureParams 
       tf_sphere_lonlat (pixels[k].unit, &pixel_lon, &pixel_lat);
       radius = fmax (radius, tf_sphere_distance (lon, lat, pixel_lon, pixel_lat));
     }
-  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_frame_get_info (frame)->time, lon, lat, CLAMP (radius, 0.01, 80.0), 0);
+  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_frame_get_info (frame)->time, lon, lat,
+                                                  CLAMP (radius, 0.01, 80.0), 0);
   return tf_potential_new (frame, cap, params->potential_step_mm, params->potential_margin_mm);
 }
 
@@ -268,18 +285,22 @@ tf_region_measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const
     {
       const char *path = tf_frame_get_path (frame);
       g_set_error (error, TF_REGION_ERROR, TF_REGION_ERROR_EMPTY,
-                   _ ("No pixel of the frame %s lies inside the outline: it is behind the limb, off the frame or smaller than "
+                   _ ("No pixel of the frame %s lies inside the outline: it is behind the limb, "
+                      "off the frame or smaller than "
                       "a pixel. Draw it elsewhere or choose another frame."),
                    path[0] != '\0' ? path : _ ("in memory"));
       return FALSE;
     }
-  gboolean wants = params->field_used == TF_FIELD_USED_POTENTIAL && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL;
-  g_autoptr (TfOutline) here = outline != NULL ? tf_mask_outline (frame, outline, (guint)params->law) : NULL;
+  gboolean wants = params->field_used == TF_FIELD_USED_POTENTIAL
+                   && tf_frame_get_info (frame)->field != TF_FIELD_RADIAL;
+  g_autoptr (TfOutline) here
+      = outline != NULL ? tf_mask_outline (frame, outline, (guint)params->law) : NULL;
   g_autoptr (TfPotential) potential = wants ? make_potential (frame, mask, params) : NULL;
   if (wants && potential == NULL)
     {
       g_set_error_literal (error, TF_REGION_ERROR, TF_REGION_ERROR_OPTION,
-                           _ ("The potential field cannot be worked out here: the region's surroundings lie beyond the limb, or there is no "
+                           _ ("The potential field cannot be worked out here: the region's "
+                              "surroundings lie beyond the limb, or there is no "
                               "memory for its box. Choose the radial field, or another frame."));
       return FALSE;
     }
@@ -295,8 +316,8 @@ tf_measure_masked (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const
 }
 
 gboolean
-tf_measure_region (TfMeasure *m, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-                   GError **error)
+tf_measure_region (TfMeasure *m, const TfFrame *frame, const TfOutline *outline,
+                   const TfMeasureParams *params, GError **error)
 {
   g_return_val_if_fail (m != NULL && frame != NULL && outline != NULL && params != NULL, FALSE);
   g_autoptr (TfMask) mask = tf_mask_new (frame, outline, params->mu_min, (guint)params->law);

@@ -13,7 +13,8 @@ planar_bearing (double lead_lon, double lead_lat, double follow_lon, double foll
   return atan2 (lead_lat - follow_lat, dx) / TF_DEG;
 }
 
-/* The chord between two points of the sphere is the tangent of their great circle at its midpoint. */
+/* The chord between two points of the sphere is the tangent of their great circle at its
+ * midpoint. */
 static double
 circle_bearing (double lead_lon, double lead_lat, double follow_lon, double follow_lat)
 {
@@ -47,12 +48,12 @@ upright (double deg)
 }
 
 void
-tf_tilt (double lead_lon_deg, double lead_lat_deg, double follow_lon_deg, double follow_lat_deg, gboolean great_circle,
-         double *bearing_deg, double *axis_tilt_deg)
+tf_tilt (double lead_lon_deg, double lead_lat_deg, double follow_lon_deg, double follow_lat_deg,
+         gboolean great_circle, double *bearing_deg, double *axis_tilt_deg)
 {
-  double bearing = great_circle
-                       ? circle_bearing (lead_lon_deg, lead_lat_deg, follow_lon_deg, follow_lat_deg)
-                       : planar_bearing (lead_lon_deg, lead_lat_deg, follow_lon_deg, follow_lat_deg);
+  double bearing
+      = great_circle ? circle_bearing (lead_lon_deg, lead_lat_deg, follow_lon_deg, follow_lat_deg)
+                     : planar_bearing (lead_lon_deg, lead_lat_deg, follow_lon_deg, follow_lat_deg);
   double middle = lead_lat_deg + follow_lat_deg;
   gboolean straddles = lead_lat_deg * follow_lat_deg < 0.0 || !(fabs (middle) > 0.0);
   *bearing_deg = upright (bearing);

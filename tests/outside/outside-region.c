@@ -2,10 +2,12 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Measures regions on invented frames and, where they are there, on real ones, and hands pixels, geometry, outline and result to
- * region.py: one JSON document a line on standard output, pixels as raw floats in files of the folder named.
+/* Measures regions on invented frames and, where they are there, on real ones, and hands
+ * pixels, geometry, outline and result to region.py: one JSON document a line on standard
+ * output, pixels as raw floats in files of the folder named.
  *
- * Usage: outside-region FOLDER DATA */
+ * Usage: outside-region FOLDER DATA
+ */
 
 #include <math.h>
 #include <stdio.h>
@@ -15,7 +17,10 @@
 #include "tf-json.h"
 
 /* Pixels about the mask's box that go with it. */
-enum { MARGIN = 12 };
+enum
+{
+  MARGIN = 12
+};
 
 typedef struct
 {
@@ -56,12 +61,14 @@ write_pixels (JsonBuilder *builder, const TfFrame *frame, const TfMask *mask, co
   guint x0, y0, w, h;
   tf_mask_get_grid (mask, &x0, &y0, &w, &h);
   guint left = x0 > MARGIN ? x0 - MARGIN : 0, low = y0 > MARGIN ? y0 - MARGIN : 0;
-  guint right = MIN (x0 + w + MARGIN, tf_frame_get_width (frame)), top = MIN (y0 + h + MARGIN, tf_frame_get_height (frame));
+  guint right = MIN (x0 + w + MARGIN, tf_frame_get_width (frame)),
+        top = MIN (y0 + h + MARGIN, tf_frame_get_height (frame));
   double box[4] = { left, low, right - left, top - low }, inner[4] = { x0, y0, w, h };
   FILE *file = fopen (path, "wb");
   g_assert_nonnull (file);
   for (guint y = low; y < top; y++)
-    fwrite (tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + left, sizeof (float), right - left, file);
+    fwrite (tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + left,
+            sizeof (float), right - left, file);
   fclose (file);
   tf_json_string (builder, "pixels", path);
   tf_json_numbers (builder, "box", box, 4);
@@ -70,7 +77,8 @@ write_pixels (JsonBuilder *builder, const TfFrame *frame, const TfMask *mask, co
 }
 
 static void
-put_out (Output *out, const char *name, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params)
+put_out (Output *out, const char *name, const TfFrame *frame, const TfOutline *outline,
+         const TfMeasureParams *params)
 {
   g_autoptr (JsonBuilder) builder = json_builder_new ();
   g_autoptr (GError) error = NULL;
@@ -99,7 +107,7 @@ put_out (Output *out, const char *name, const TfFrame *frame, const TfOutline *o
   printf ("%s\n", text);
 }
 
-/* -- invented regions -------------------------------------------------------------------------------------- */
+/* -- invented regions -------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -107,9 +115,9 @@ typedef struct
 } Invented;
 
 static const Invented invented[] = {
-  { 0, 12, 2.0, 0, 4.0, 1.0, 10, 0, 0, 0 },      { -48, -20, 2.0, 180, -7.0, 0.983, 12, 90, 0, 0 },
-  { 55, 25, 0.6, 33, 0.0, 1.016, 8, 0, 1, 0 },   { 20, -33, 4.0, -77, 6.0, 0.99, 15, 60, 0, 0 },
-  { -30, 8, 3.0, 121, 3.0, 0.6, 9, 0, 0, 1 },    { 62, -6, 1.0, 3.1, -2.0, 1.0, 10, 120, 1, 0 },
+  { 0, 12, 2.0, 0, 4.0, 1.0, 10, 0, 0, 0 },    { -48, -20, 2.0, 180, -7.0, 0.983, 12, 90, 0, 0 },
+  { 55, 25, 0.6, 33, 0.0, 1.016, 8, 0, 1, 0 }, { 20, -33, 4.0, -77, 6.0, 0.99, 15, 60, 0, 0 },
+  { -30, 8, 3.0, 121, 3.0, 0.6, 9, 0, 0, 1 },  { 62, -6, 1.0, 3.1, -2.0, 1.0, 10, 120, 1, 0 },
 };
 
 static void
@@ -134,8 +142,10 @@ invent (Output *out, guint k)
   poles[2].sigma = 0.4;
   g_autoptr (TfFrame) frame = builder_frame (&how, poles, 3);
   g_autoptr (TfOutline) cap = builder_cap (v->lon, v->lat, 5.4);
-  TfVertex hole[4] = { { BUILDER_L0 + v->lon - 0.6, v->lat - 3.1 }, { BUILDER_L0 + v->lon + 0.9, v->lat - 3.3 },
-                       { BUILDER_L0 + v->lon + 1.2, v->lat - 2.0 }, { BUILDER_L0 + v->lon - 0.4, v->lat - 1.8 } };
+  TfVertex hole[4] = { { BUILDER_L0 + v->lon - 0.6, v->lat - 3.1 },
+                       { BUILDER_L0 + v->lon + 0.9, v->lat - 3.3 },
+                       { BUILDER_L0 + v->lon + 1.2, v->lat - 2.0 },
+                       { BUILDER_L0 + v->lon - 0.4, v->lat - 1.8 } };
   g_autoptr (TfOutline) outline = tf_outline_with_ring (cap, hole, 4, k % 2 == 0, NULL);
   g_assert_nonnull (outline);
   tf_measure_params_init (&params);
@@ -167,7 +177,7 @@ quiet (Output *out)
   put_out (out, "quiet", frame, outline, &params);
 }
 
-/* -- real regions ------------------------------------------------------------------------------------------ */
+/* -- real regions ------------------------------------------------------------------------------ */
 
 typedef struct
 {
@@ -196,7 +206,8 @@ measure_real (Output *out, const Real *r, const char *data)
   g_autoptr (TfFrame) frame = tf_frame_open (path, &(TfFrameSpec){ 0 }, NULL, &error);
   g_assert_no_error (error);
   double l0 = tf_geometry_central_carrington (tf_frame_get_geometry (frame));
-  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_frame_get_info (frame)->time, l0 + r->cmd, r->lat, r->radius, 40);
+  g_autoptr (TfOutline) cap
+      = tf_outline_new_cap (tf_frame_get_info (frame)->time, l0 + r->cmd, r->lat, r->radius, 40);
   tf_measure_params_init (&params);
   params.outline_term = FALSE;
   put_out (out, name, frame, cap, &params);

@@ -16,8 +16,16 @@ builder_time (void)
 void
 builder_init (BuilderFrame *how, double lon, double lat, double scale_arcsec)
 {
-  *how = (BuilderFrame){ .scale_arcsec = scale_arcsec, .b0_deg = -4.2, .distance_au = 0.991, .lon = lon, .lat = lat,
-                         .half_deg = 8.0, .fine = 4, .seed = 1, .dx = 0.31, .dy = -0.17 };
+  *how = (BuilderFrame){ .scale_arcsec = scale_arcsec,
+                         .b0_deg = -4.2,
+                         .distance_au = 0.991,
+                         .lon = lon,
+                         .lat = lat,
+                         .half_deg = 8.0,
+                         .fine = 4,
+                         .seed = 1,
+                         .dx = 0.31,
+                         .dy = -0.17 };
 }
 
 TfGeometry
@@ -25,21 +33,22 @@ builder_geometry (const BuilderFrame *how)
 {
   TfGeometry g = { 0 };
   double x, y, mu;
-  TfObserver observer = { how->distance_au * TF_AU_M, how->b0_deg, 2.5, BUILDER_L0, TF_OBSERVER_HEADER };
+  TfObserver observer
+      = { how->distance_au * TF_AU_M, how->b0_deg, 2.5, BUILDER_L0, TF_OBSERVER_HEADER };
   double degree_arcsec = TF_RADIUS_MM * TF_DEG / (how->distance_au * TF_AU_M * 1e-6) / TF_ARCSEC;
   guint side = 2 * (guint)ceil (how->half_deg * degree_arcsec / how->scale_arcsec) + 1;
-  g_assert_true (tf_geometry_make_disk (&g, side, side, 0.0, 0.0, how->scale_arcsec, how->turn_deg, &observer,
-                                        TF_RADIUS_MM));
+  g_assert_true (tf_geometry_make_disk (&g, side, side, 0.0, 0.0, how->scale_arcsec, how->turn_deg,
+                                        &observer, TF_RADIUS_MM));
   g_assert_true (tf_geometry_sun_to_pixel (&g, BUILDER_L0 + how->lon, how->lat, &x, &y, &mu));
   double middle = 0.5 * (side + 1);
-  g_assert_true (tf_geometry_make_disk (&g, side, side, middle - x + how->dx, middle - y + how->dy, how->scale_arcsec,
-                                        how->turn_deg, &observer, TF_RADIUS_MM));
+  g_assert_true (tf_geometry_make_disk (&g, side, side, middle - x + how->dx, middle - y + how->dy,
+                                        how->scale_arcsec, how->turn_deg, &observer, TF_RADIUS_MM));
   return g;
 }
 
 static void
-add_row (const TfGeometry *g, const BuilderFrame *how, const BuilderPole *poles, guint n, double y, double x0,
-         double (*unit)[3], double *mu, double *row)
+add_row (const TfGeometry *g, const BuilderFrame *how, const BuilderPole *poles, guint n, double y,
+         double x0, double (*unit)[3], double *mu, double *row)
 {
   tf_geometry_row_sun (g, y, x0, g->width, unit, mu, NULL);
   for (guint p = 0; p < n; p++)
@@ -74,7 +83,8 @@ builder_field (const TfGeometry *g, const BuilderFrame *how, const BuilderPole *
       memset (row, 0, g->width * sizeof *row);
       for (guint j = 0; j < fine; j++)
         for (guint i = 0; i < fine; i++)
-          add_row (g, how, poles, n, y + 0.5 + (j + 0.5) / fine, 0.5 + (i + 0.5) / fine, unit, mu, row);
+          add_row (g, how, poles, n, y + 0.5 + (j + 0.5) / fine, 0.5 + (i + 0.5) / fine, unit, mu,
+                   row);
       for (guint x = 0; x < g->width; x++)
         field[(gsize)y * g->width + x] = (float)(row[x] / (fine * fine));
     }
@@ -129,10 +139,12 @@ builder_cap (double lon, double lat, double radius_deg)
 }
 
 void
-builder_bipole (BuilderPole poles[2], double lon, double lat, double separation, double tilt, double flux, int leader)
+builder_bipole (BuilderPole poles[2], double lon, double lat, double separation, double tilt,
+                double flux, int leader)
 {
   double h = lat < 0.0 ? -1.0 : 1.0;
-  double dy = -h * separation * sin (tilt * TF_DEG), dx = separation * cos (tilt * TF_DEG) / cos (lat * TF_DEG);
+  double dy = -h * separation * sin (tilt * TF_DEG),
+         dx = separation * cos (tilt * TF_DEG) / cos (lat * TF_DEG);
   poles[0] = (BuilderPole){ lon + 0.5 * dx, lat + 0.5 * dy, 0.55, leader * flux };
   poles[1] = (BuilderPole){ lon - 0.5 * dx, lat - 0.5 * dy, 0.75, -leader * flux };
 }
@@ -141,7 +153,9 @@ const char *
 builder_real (const char *name)
 {
   const char *given = g_getenv ("TF_SHARED_DATA");
-  g_autofree char *base = given != NULL ? g_strdup (given) : g_build_filename (TF_SOURCE_DIR, "..", "shared", "data", NULL);
+  g_autofree char *base = given != NULL
+                              ? g_strdup (given)
+                              : g_build_filename (TF_SOURCE_DIR, "..", "shared", "data", NULL);
   g_autofree char *path = g_build_filename (base, "magnetograms", name, NULL);
   return g_file_test (path, G_FILE_TEST_EXISTS) ? g_intern_string (path) : NULL;
 }

@@ -9,12 +9,13 @@
 #include "region-builder.h"
 #include "tf-constants.h"
 
-/* Places from central meridian, deg; at B0 = -4.2 deg all have mu >= 0.34, the first 13 mu >= 0.5. */
+/* Places from central meridian, deg; at B0 = -4.2 deg all have mu >= 0.34, the first 13 mu >=
+ * 0.5. */
 static const double places[][2] = {
-  { 0, 0 },    { 0, 15 },   { 0, -15 },  { 20, 20 },   { -20, -20 }, { 35, 10 },  { -35, 25 },
-  { -30, -8 }, { 12, -33 }, { -10, 38 }, { 45, -20 },  { -45, 5 },   { 28, 28 },  { 67, 8 },
-  { -67, -8 }, { 60, -25 }, { -62, 22 }, { 66, -14 },  { -66, 2 },   { 63, 18 },  { -47, 40 },
-  { 5, -52 },
+  { 0, 0 },    { 0, 15 },   { 0, -15 },  { 20, 20 },  { -20, -20 }, { 35, 10 },
+  { -35, 25 }, { -30, -8 }, { 12, -33 }, { -10, 38 }, { 45, -20 },  { -45, 5 },
+  { 28, 28 },  { 67, 8 },   { -67, -8 }, { 60, -25 }, { -62, 22 },  { 66, -14 },
+  { -66, 2 },  { 63, 18 },  { -47, 40 }, { 5, -52 },
 };
 static const double turns[] = { 0.0, 180.0, 37.0, -90.0, 121.0, 178.93 };
 
@@ -30,11 +31,13 @@ note_worst (Worst *worst, const TfMeasure *m, const BuilderPole poles[2], double
   for (guint k = 0; k < 2; k++)
     {
       const TfPole *pole = poles[k].flux > 0.0 ? &m->positive : &m->negative;
-      double off = tf_sphere_distance (pole->carrington_lon_deg, pole->lat_deg, BUILDER_L0 + poles[k].lon, poles[k].lat);
+      double off = tf_sphere_distance (pole->carrington_lon_deg, pole->lat_deg,
+                                       BUILDER_L0 + poles[k].lon, poles[k].lat);
       worst->flux = fmax (worst->flux, fabs (pole->flux_mx / fabs (poles[k].flux) - 1.0));
       worst->place = fmax (worst->place, isnan (off) ? INFINITY : off);
     }
-  worst->tilt = fmax (worst->tilt, isnan (m->axis_bearing_deg) ? INFINITY : fabs (m->axis_bearing_deg - tilt));
+  worst->tilt = fmax (worst->tilt,
+                      isnan (m->axis_bearing_deg) ? INFINITY : fabs (m->axis_bearing_deg - tilt));
 }
 
 static void
@@ -61,7 +64,8 @@ check_scale (double scale_arcsec)
       how.turn_deg = turns[k % G_N_ELEMENTS (turns)];
       how.half_deg = 7.0;
       how.fine = scale_arcsec < 1.0 ? 1 : scale_arcsec < 3.0 ? 4 : 10;
-      builder_bipole (poles, lon, lat, 4.0 + 0.07 * k, 3.0 * ((int)(k * 7 % 13) - 6), 1e22 + 2e21 * k, k % 2 ? 1 : -1);
+      builder_bipole (poles, lon, lat, 4.0 + 0.07 * k, 3.0 * ((int)(k * 7 % 13) - 6),
+                      1e22 + 2e21 * k, k % 2 ? 1 : -1);
       true_tilt (poles, &bearing, &tilt);
       g_autoptr (TfFrame) frame = builder_frame (&how, poles, 2);
       g_autoptr (TfOutline) outline = builder_cap (lon, lat, 6.5);
@@ -73,8 +77,10 @@ check_scale (double scale_arcsec)
       least_mu = fmin (least_mu, m.mu);
       g_assert_cmpint (m.leading_polarity, ==, k % 2 ? 1 : -1);
     }
-  g_test_message ("%g arcsec, floor 0, %u places, mu down to %.2f: worst flux %.3f %%, pole %.4f deg, tilt %.3f deg",
-                  scale_arcsec, (guint)G_N_ELEMENTS (places), least_mu, 100.0 * worst.flux, worst.place, worst.tilt);
+  g_test_message ("%g arcsec, floor 0, %u places, mu down to %.2f: worst flux %.3f %%, pole %.4f "
+                  "deg, tilt %.3f deg",
+                  scale_arcsec, (guint)G_N_ELEMENTS (places), least_mu, 100.0 * worst.flux,
+                  worst.place, worst.tilt);
   tf_check_between ("least mu", least_mu, 0.34, 0.42);
   tf_check_between ("flux", worst.flux, 0.0, 0.01);
   tf_check_between ("pole", worst.place, 0.0, 0.01);
@@ -99,10 +105,11 @@ test_five_arcsec (void)
   check_scale (5.0);
 }
 
-/* -- default floors: the truth is the noise-free frame at 0.5 arcsec measured with the same floor ----------- */
+/* -- default floors: truth is the noise-free frame at 0.5 arcsec under the same floor --------- */
 
 static void
-measure_quietly (TfMeasure *m, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params)
+measure_quietly (TfMeasure *m, const TfFrame *frame, const TfOutline *outline,
+                 const TfMeasureParams *params)
 {
   g_autoptr (GError) error = NULL;
   tf_measure_region (m, frame, outline, params, &error);
@@ -114,18 +121,21 @@ compare (Worst *worst, const TfMeasure *m, const TfMeasure *truth)
 {
   for (guint k = 0; k < 2; k++)
     {
-      const TfPole *a = k == 0 ? &m->positive : &m->negative, *b = k == 0 ? &truth->positive : &truth->negative;
-      double off = tf_sphere_distance (a->carrington_lon_deg, a->lat_deg, b->carrington_lon_deg, b->lat_deg);
+      const TfPole *a = k == 0 ? &m->positive : &m->negative,
+                   *b = k == 0 ? &truth->positive : &truth->negative;
+      double off = tf_sphere_distance (a->carrington_lon_deg, a->lat_deg, b->carrington_lon_deg,
+                                       b->lat_deg);
       worst->flux = fmax (worst->flux, fabs (a->flux_mx / b->flux_mx - 1.0));
       worst->place = fmax (worst->place, isnan (off) ? INFINITY : off);
     }
   worst->tilt = fmax (worst->tilt, fabs (m->axis_bearing_deg - truth->axis_bearing_deg));
 }
 
-/* One place at one scale under one kind of floor, against the same floor in gauss on the fine frame without noise. */
+/* One place at one scale under one kind of floor, against the same floor in gauss on the fine
+ * frame without noise. */
 static void
-check_place (guint k, double scale_arcsec, TfFloorKind kind, const TfFrame *fine, const BuilderPole poles[2],
-             Worst *worst)
+check_place (guint k, double scale_arcsec, TfFloorKind kind, const TfFrame *fine,
+             const BuilderPole poles[2], Worst *worst)
 {
   BuilderFrame how;
   TfMeasureParams params;
@@ -166,7 +176,8 @@ test_default_floors (void)
         check_place (k, scales[s], k % 2 ? TF_FLOOR_EVEN : TF_FLOOR_LOCAL, fine, poles, &worst[s]);
     }
   for (guint s = 0; s < G_N_ELEMENTS (scales); s++)
-    g_test_message ("%g arcsec, default floors, noise 10 G, mu >= 0.5: worst flux %.3f %%, pole %.4f deg, tilt %.3f deg",
+    g_test_message ("%g arcsec, default floors, noise 10 G, mu >= 0.5: worst flux %.3f %%, pole "
+                    "%.4f deg, tilt %.3f deg",
                     scales[s], 100.0 * worst[s].flux, worst[s].place, worst[s].tilt);
   for (guint s = 0; s < 2; s++)
     {
@@ -176,7 +187,7 @@ test_default_floors (void)
     }
 }
 
-/* -- even floor -------------------------------------------------------------------------------------------- */
+/* -- even floor -------------------------------------------------------------------------------- */
 
 static double
 kept_share (double lon, TfFloorKind kind)
@@ -209,7 +220,8 @@ test_even_floor (void)
   double first = kept_share (0.0, TF_FLOOR_EVEN);
   tf_check_between ("share of the flux above an even floor of 60 of 300 G", first, 0.78, 0.82);
   for (guint k = 1; k < G_N_ELEMENTS (lons); k++)
-    tf_check_near ("share kept by an even floor", kept_share (lons[k], TF_FLOOR_EVEN) / first, 1.0, 0.02);
+    tf_check_near ("share kept by an even floor", kept_share (lons[k], TF_FLOOR_EVEN) / first, 1.0,
+                   0.02);
   tf_check_between ("a local floor loses flux towards the limb",
                     kept_share (70.0, TF_FLOOR_LOCAL) / kept_share (0.0, TF_FLOOR_LOCAL), 0.3, 0.9);
 }
@@ -220,6 +232,8 @@ add_bipole_tests (void)
   g_test_add_func ("/region/bipole/half-arcsec-pixels-give-flux-place-and-tilt", test_half_arcsec);
   g_test_add_func ("/region/bipole/two-arcsec-pixels-give-flux-place-and-tilt", test_two_arcsec);
   g_test_add_func ("/region/bipole/five-arcsec-pixels-give-flux-place-and-tilt", test_five_arcsec);
-  g_test_add_func ("/region/bipole/default-floors-agree-with-the-noise-free-frame", test_default_floors);
-  g_test_add_func ("/region/bipole/an-even-floor-keeps-the-same-share-to-the-limb", test_even_floor);
+  g_test_add_func ("/region/bipole/default-floors-agree-with-the-noise-free-frame",
+                   test_default_floors);
+  g_test_add_func ("/region/bipole/an-even-floor-keeps-the-same-share-to-the-limb",
+                   test_even_floor);
 }

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Regions that are no plain bipole are told so: each doubtful case has its caution, and options do what they say. */
+/* Regions that are no plain bipole are told so: each doubtful case has its caution, and
+ * options do what they say. */
 
 #include <math.h>
 
@@ -11,8 +12,8 @@
 #include "tf-json.h"
 
 static void
-measure_poles (TfMeasure *m, const BuilderFrame *how, const BuilderPole *poles, guint n, double radius,
-               const TfMeasureParams *params)
+measure_poles (TfMeasure *m, const BuilderFrame *how, const BuilderPole *poles, guint n,
+               double radius, const TfMeasureParams *params)
 {
   g_autoptr (GError) error = NULL;
   TfMeasureParams plain;
@@ -120,8 +121,8 @@ test_decayed (void)
   for (guint k = 0; k < G_N_ELEMENTS (poles); k++)
     {
       double sign = k % 2 ? -1.0 : 1.0;
-      poles[k] = (BuilderPole){ -sign * 0.6 + 3.5 * cos (k * 2.4), 20.0 + 3.0 * sin (k * 2.4 + 0.3 * sign), 0.7,
-                                sign * 1.4e20, 0.0 };
+      poles[k] = (BuilderPole){ -sign * 0.6 + 3.5 * cos (k * 2.4),
+                                20.0 + 3.0 * sin (k * 2.4 + 0.3 * sign), 0.7, sign * 1.4e20, 0.0 };
     }
   g_auto (TfMeasure) m = { 0 };
   measure_poles (&m, &how, poles, G_N_ELEMENTS (poles), 6.0, NULL);
@@ -200,7 +201,9 @@ test_pixels (void)
   must_have (&m, "saturated-core");
   must_have (&m, "touches-missing-data");
   must_have (&m, "floor-below-noise");
-  tf_check_near ("missing pixels", tf_note_get_number (tf_notes_find (m.cautions, "touches-missing-data"), 0), 12.0, 0.0);
+  tf_check_near ("missing pixels",
+                 tf_note_get_number (tf_notes_find (m.cautions, "touches-missing-data"), 0), 12.0,
+                 0.0);
   g_autoptr (TfOutline) over_edge = builder_cap (5.0, 21.0, 5.5);
   g_auto (TfMeasure) cut = { 0 };
   tf_measure_region (&cut, frame, over_edge, &params, &error);
@@ -231,7 +234,7 @@ test_nothing (void)
   g_assert_nonnull (strstr (text, "\"witnesses\":[null,null,null]"));
 }
 
-/* -- options ----------------------------------------------------------------------------------------------- */
+/* -- options ----------------------------------------------------------------------------------- */
 
 static void
 test_fields (void)
@@ -250,7 +253,8 @@ test_fields (void)
   measure_poles (&radial, &how, poles, 2, 6.0, &params);
   params.field_used = TF_FIELD_USED_OBSERVED;
   measure_poles (&observed, &how, poles, 2, 6.0, &params);
-  tf_check_near ("as observed: once mu", observed.flux_unsigned_mx / radial.flux_unsigned_mx, radial.mu, 0.02);
+  tf_check_near ("as observed: once mu", observed.flux_unsigned_mx / radial.flux_unsigned_mx,
+                 radial.mu, 0.02);
   params.field_used = TF_FIELD_USED_RADIAL;
   params.scale = 1.4;
   measure_poles (&scaled, &how, poles, 2, 6.0, &params);
@@ -303,9 +307,10 @@ test_dipole (void)
   params.floor_gauss = 0.0;
   g_auto (TfMeasure) m = { 0 };
   measure_poles (&m, &how, poles, 2, 6.5, &params);
-  /* 3 flux (sin leading - sin following) / (4 pi R^2), the field of two points; its source is the definition */
+  /* 3 flux (sin leading - sin following) / (4 pi R^2), by the definition */
   double r = TF_RADIUS_MM * 1e8;
-  double expected = 3.0 * 1e22 * (sin (poles[0].lat * TF_DEG) - sin (poles[1].lat * TF_DEG)) / (4.0 * TF_PI * r * r);
+  double expected = 3.0 * 1e22 * (sin (poles[0].lat * TF_DEG) - sin (poles[1].lat * TF_DEG))
+                    / (4.0 * TF_PI * r * r);
   tf_check_near ("axial dipole", m.axial_dipole_gauss / expected, 1.0, 0.02);
   tf_check_near ("from the poles", m.axial_dipole_poles_gauss / expected, 1.0, 0.02);
   tf_check_between ("its sigma", m.axial_dipole_sigma_gauss, 0.0, 0.2 * fabs (expected));
@@ -330,21 +335,28 @@ test_realisations (void)
   params.realisations = 500;
   measure_poles (&trials, &how, poles, 2, 5.0, &params);
   measure_poles (&again, &how, poles, 2, 5.0, &params);
-  g_test_message ("noise term of the tilt: formula %.4f, 500 realisations %.4f deg", formula.tilt_terms.noise,
-                  trials.tilt_terms.noise);
+  g_test_message ("noise term of the tilt: formula %.4f, 500 realisations %.4f deg",
+                  formula.tilt_terms.noise, trials.tilt_terms.noise);
   tf_check_between ("tilt", trials.tilt_terms.noise / formula.tilt_terms.noise, 0.8, 1.2);
-  tf_check_between ("separation", trials.separation_noise_deg / formula.separation_noise_deg, 0.75, 1.25);
-  tf_check_between ("flux", trials.positive.flux_noise_mx / formula.positive.flux_noise_mx, 0.7, 1.3);
+  tf_check_between ("separation", trials.separation_noise_deg / formula.separation_noise_deg, 0.75,
+                    1.25);
+  tf_check_between ("flux", trials.positive.flux_noise_mx / formula.positive.flux_noise_mx, 0.7,
+                    1.3);
   tf_check_near ("equal seeds", again.tilt_terms.noise, trials.tilt_terms.noise, 0.0);
 }
 
-/* -- maps -------------------------------------------------------------------------------------------------- */
+/* -- maps -------------------------------------------------------------------------------------- */
 
 static void
 test_map (void)
 {
-  TfGeometry g = { .projection = TF_PROJECTION_CEA, .width = 720, .height = 360, .crpix = { 360.5, 180.5 },
-                   .crval_deg = { 0.0, 0.0 }, .lonpole_deg = 0.0, .radius_mm = TF_RADIUS_MM };
+  TfGeometry g = { .projection = TF_PROJECTION_CEA,
+                   .width = 720,
+                   .height = 360,
+                   .crpix = { 360.5, 180.5 },
+                   .crval_deg = { 0.0, 0.0 },
+                   .lonpole_deg = 0.0,
+                   .radius_mm = TF_RADIUS_MM };
   BuilderFrame how = { .radial = TRUE, .fine = 6 };
   BuilderPole poles[2];
   TfMeasureParams params;

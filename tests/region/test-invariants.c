@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* What must not change when nothing on the Sun has changed, and what must change in one way only. */
+/* What must not change when nothing on the Sun has changed, and what must change in one way
+ * only. */
 
 #include <math.h>
 
@@ -11,7 +12,8 @@
 #include "tf-hint.h"
 
 static void
-measure_with (TfMeasure *m, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params)
+measure_with (TfMeasure *m, const TfFrame *frame, const TfOutline *outline,
+              const TfMeasureParams *params)
 {
   g_autoptr (GError) error = NULL;
   tf_measure_region (m, frame, outline, params, &error);
@@ -135,7 +137,8 @@ test_hemisphere (void)
   tf_check_near ("tilt", m[1].axis_tilt_deg, m[0].axis_tilt_deg, 1e-4);
   tf_check_near ("bearing", m[1].axis_bearing_deg, -m[0].axis_bearing_deg, 1e-4);
   tf_check_near ("flux", m[1].flux_unsigned_mx / m[0].flux_unsigned_mx, 1.0, 1e-3);
-  tf_check_near ("dipole", m[1].axial_dipole_gauss, -m[0].axial_dipole_gauss, 1e-3 * fabs (m[0].axial_dipole_gauss));
+  tf_check_near ("dipole", m[1].axial_dipole_gauss, -m[0].axial_dipole_gauss,
+                 1e-3 * fabs (m[0].axial_dipole_gauss));
   tf_measure_clear (&m[0]);
   tf_measure_clear (&m[1]);
 }
@@ -163,12 +166,15 @@ test_cut_in_two (void)
   measure_with (&m, frame, whole, &params);
   measure_with (&a, frame, one, &params);
   measure_with (&b, frame, other, &params);
-  tf_check_near ("positive flux", (a.positive.flux_mx + b.positive.flux_mx) / m.positive.flux_mx, 1.0, 1e-12);
-  tf_check_near ("negative flux", (a.negative.flux_mx + b.negative.flux_mx) / m.negative.flux_mx, 1.0, 1e-12);
+  tf_check_near ("positive flux", (a.positive.flux_mx + b.positive.flux_mx) / m.positive.flux_mx,
+                 1.0, 1e-12);
+  tf_check_near ("negative flux", (a.negative.flux_mx + b.negative.flux_mx) / m.negative.flux_mx,
+                 1.0, 1e-12);
   g_assert_cmpuint (a.positive.pixels + b.positive.pixels, ==, m.positive.pixels);
 }
 
-/* The mask's fast test against the outline's own, pixel by pixel, with a hole and a left-out area. */
+/* The mask's fast test against the outline's own, pixel by pixel, with a hole and a left-out
+ * area. */
 static void
 test_mask (void)
 {
@@ -180,7 +186,8 @@ test_mask (void)
   g_autoptr (TfOutline) cap = builder_cap (58.0, -10.0, 6.0);
   TfVertex hole[4], out[3];
   for (guint k = 0; k < 4; k++)
-    hole[k] = (TfVertex){ BUILDER_L0 + 57.0 + 2.0 * cos (k * TF_PI / 2.0), -9.0 + 2.0 * sin (k * TF_PI / 2.0) };
+    hole[k] = (TfVertex){ BUILDER_L0 + 57.0 + 2.0 * cos (k * TF_PI / 2.0),
+                          -9.0 + 2.0 * sin (k * TF_PI / 2.0) };
   for (guint k = 0; k < 3; k++)
     out[k] = (TfVertex){ BUILDER_L0 + 61.0 + 3.0 * cos (k * 2.0), -12.0 + 3.0 * sin (k * 2.0) };
   g_autoptr (TfOutline) with_hole = tf_outline_with_ring (cap, hole, 4, FALSE, NULL);
@@ -207,7 +214,8 @@ test_mask (void)
   tf_check_near ("nothing is cut", tf_mask_get_cut (mask), 0.0, 0.0);
 }
 
-/* The part of an outline that is behind the limb or off the frame is told; wholly hidden ones give no pixels. */
+/* The part of an outline that is behind the limb or off the frame is told; wholly hidden ones
+ * give no pixels. */
 static void
 test_cut_share (void)
 {
@@ -241,8 +249,10 @@ check_hints_equal (GPtrArray *a, GPtrArray *b)
     {
       const TfHint *x = g_ptr_array_index (a, k), *y = g_ptr_array_index (b, k);
       g_assert_true (tf_outline_equal (x->outline, y->outline));
-      g_assert_cmpmem (&x->measure.positive, sizeof (TfPole), &y->measure.positive, sizeof (TfPole));
-      g_assert_cmpmem (&x->measure.axis_bearing_deg, sizeof (double), &y->measure.axis_bearing_deg, sizeof (double));
+      g_assert_cmpmem (&x->measure.positive, sizeof (TfPole), &y->measure.positive,
+                       sizeof (TfPole));
+      g_assert_cmpmem (&x->measure.axis_bearing_deg, sizeof (double), &y->measure.axis_bearing_deg,
+                       sizeof (double));
     }
 }
 

@@ -2,39 +2,45 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The claimed noise term against what noise does. Outline and floor are held, seeds are fixed beforehand; the truth is the
- * measure of the same frame without noise. Each of the four quantities, at each place and noise level, must be covered
- * within one sigma in 60-76 % and within two in 92-98 % of the realisations. Where the region falls on the pixels is
- * changed from one thirty realisations to the next, as it changes from frame to frame: which pixels lie next to the floor is as much
- * chance as the noise is. */
+/* The claimed noise term against what noise does. Outline and floor are held, seeds are fixed
+ * beforehand; the truth is the measure of the same frame without noise. Each of the four
+ * quantities, at each place and noise level, must be covered within one sigma in 60-76 % and
+ * within two in 92-98 % of the realisations. Where the region falls on the pixels is changed
+ * from one thirty realisations to the next, as it changes from frame to frame: which pixels
+ * lie next to the floor is as much chance as the noise is. */
 
 #include <math.h>
 
 #include "region-builder.h"
 #include "tf-constants.h"
 
-enum { REALISATIONS = 300, REGISTRATIONS = 10, QUANTITIES = 4 };
+enum
+{
+  REALISATIONS = 300,
+  REGISTRATIONS = 10,
+  QUANTITIES = 4
+};
 
-static const char *const names[QUANTITIES] = { "tilt", "separation", "positive flux", "negative flux" };
+static const char *const names[QUANTITIES]
+    = { "tilt", "separation", "positive flux", "negative flux" };
 
 typedef struct
 {
   double lon, lat, tilt;
 } NoisePlace;
 
-static const NoisePlace noise_places[] = { { 18.0, 19.0, 14.0 }, { 43.0, -22.0, 10.0 }, { -50.0, 12.0, 10.0 } };
+static const NoisePlace noise_places[]
+    = { { 18.0, 19.0, 14.0 }, { 43.0, -22.0, 10.0 }, { -50.0, 12.0, 10.0 } };
 static const double noise_levels[] = { 10.0, 20.0 };
 
 /* One spot that leads, grains that follow. */
 static guint
 scene (BuilderPole *poles, const NoisePlace *place)
 {
-  static const double follow[5][4] = { /* west, north, sigma (deg), share of the flux */
-    { 0.1, -0.1, 0.50, 0.36 },
-    { -1.2, 0.9, 0.40, 0.22 },
-    { 0.7, 1.3, 0.36, 0.14 },
-    { -0.9, -1.2, 0.38, 0.16 },
-    { 1.0, -1.0, 0.34, 0.12 },
+  static const double follow[5][4] = {
+    /* west, north, sigma (deg), share of the flux */
+    { 0.1, -0.1, 0.50, 0.36 },  { -1.2, 0.9, 0.40, 0.22 }, { 0.7, 1.3, 0.36, 0.14 },
+    { -0.9, -1.2, 0.38, 0.16 }, { 1.0, -1.0, 0.34, 0.12 },
   };
   BuilderPole two[2];
   builder_bipole (two, place->lon, place->lat, 4.8, place->tilt, 6e21, 1);
@@ -70,8 +76,8 @@ typedef struct
 } Covered;
 
 static void
-measure (TfMeasure *m, const TfGeometry *g, const BuilderFrame *how, const float *field, const TfOutline *outline,
-         const TfMeasureParams *params)
+measure (TfMeasure *m, const TfGeometry *g, const BuilderFrame *how, const float *field,
+         const TfOutline *outline, const TfMeasureParams *params)
 {
   g_autoptr (GError) error = NULL;
   g_autoptr (TfFrame) frame = builder_frame_of (g, how, field);
@@ -79,7 +85,8 @@ measure (TfMeasure *m, const TfGeometry *g, const BuilderFrame *how, const float
   g_assert_no_error (error);
 }
 
-/* One way in which the region falls on the pixels: the measure without noise, and a number of realisations. */
+/* One way in which the region falls on the pixels: the measure without noise, and a number of
+ * realisations. */
 static void
 cover (Covered *covered, const NoisePlace *place, double noise, guint registration)
 {
@@ -126,9 +133,10 @@ check_coverage (const NoisePlace *place, double noise)
     cover (&covered, place, noise, r);
   for (guint q = 0; q < QUANTITIES; q++)
     {
-      double one = (double)covered.one[q] / REALISATIONS, two = (double)covered.two[q] / REALISATIONS;
-      g_test_message ("W%+.0f N%+.0f, %.0f G, %s: %.1f %% within 1 sigma, %.1f %% within 2", place->lon, place->lat, noise,
-                      names[q], 100.0 * one, 100.0 * two);
+      double one = (double)covered.one[q] / REALISATIONS,
+             two = (double)covered.two[q] / REALISATIONS;
+      g_test_message ("W%+.0f N%+.0f, %.0f G, %s: %.1f %% within 1 sigma, %.1f %% within 2",
+                      place->lon, place->lat, noise, names[q], 100.0 * one, 100.0 * two);
       tf_check_between (names[q], one, 0.60, 0.76);
       tf_check_between (names[q], two, 0.92, 0.98);
     }

@@ -4,12 +4,16 @@
 
 /* The claimed outline term against outlines as people draw them, on real frames.
  *
- * How a person's outline is made here: the region's hint is what all agree on. A person clicks 12 to 22 points around it, evenly in
- * arc, joined by straight lines. Each person leaves a margin of their own (normal, mean 0, sigma 0.35 deg or 5 % of the
- * radius, whichever is more), moves off the middle (normal, half as much each way), and misses with each click (normal, as much
- * as the margin; one click's miss is shared half with its neighbours, as a hand that is off stays off for a while). Nothing of
- * the term's own sixteen deformations is used. The spread is 1.4826 MAD over 60 people; the term must agree with it within a factor of 1.5, taken
- * as the median over the bipolar regions of the real frames, for the tilt, the separation and the fluxes. */
+ * How a person's outline is made here: the region's hint is what all agree on. A person clicks
+ * 12 to 22 points around it, evenly in arc, joined by straight lines. Each person leaves a
+ * margin of their own (normal, mean 0, sigma 0.35 deg or 5 % of the radius, whichever is
+ * more), moves off the middle (normal, half as much each way), and misses with each click
+ * (normal, as much as the margin; one click's miss is shared half with its neighbours, as a
+ * hand that is off stays off for a while). Nothing of the term's own sixteen deformations is
+ * used. The spread is 1.4826 MAD over 60 people; the term must agree with it within a factor
+ * of 1.5, taken as the median over the bipolar regions of the real frames, for the tilt, the
+ * separation and the fluxes.
+ */
 
 #include <math.h>
 #include <stdlib.h>
@@ -18,12 +22,18 @@
 #include "tf-constants.h"
 #include "tf-hint.h"
 
-enum { PEOPLE = 60, QUANTITIES = 4, MOST_REGIONS = 32 };
+enum
+{
+  PEOPLE = 60,
+  QUANTITIES = 4,
+  MOST_REGIONS = 32
+};
 
-static const char *const names[QUANTITIES] = { "tilt", "separation", "positive flux", "negative flux" };
-static const char *const frames[] = { "mdi.fd_M_96m_lev182.20110401_000000_TAI.data.fits",
-                                      "mdi.fd_m_96m_lev182.20101015_000000_TAI.data.fits",
-                                      "sdo-hmi_2011-02-14_20-34-12.fits" };
+static const char *const names[QUANTITIES]
+    = { "tilt", "separation", "positive flux", "negative flux" };
+static const char *const frames[]
+    = { "mdi.fd_M_96m_lev182.20110401_000000_TAI.data.fits",
+        "mdi.fd_m_96m_lev182.20101015_000000_TAI.data.fits", "sdo-hmi_2011-02-14_20-34-12.fits" };
 
 static double
 normal (GRand *rand)
@@ -38,9 +48,11 @@ click_ring (const TfVertex *ring, guint n, TfVertex *clicks, guint n_clicks, dou
 {
   double whole = 0.0, at = 0.0;
   for (guint k = 0; k < n; k++)
-    whole += tf_sphere_distance (ring[k].lon_deg, ring[k].lat_deg, ring[(k + 1) % n].lon_deg, ring[(k + 1) % n].lat_deg);
+    whole += tf_sphere_distance (ring[k].lon_deg, ring[k].lat_deg, ring[(k + 1) % n].lon_deg,
+                                 ring[(k + 1) % n].lat_deg);
   guint k = 0;
-  double here = tf_sphere_distance (ring[0].lon_deg, ring[0].lat_deg, ring[1].lon_deg, ring[1].lat_deg);
+  double here
+      = tf_sphere_distance (ring[0].lon_deg, ring[0].lat_deg, ring[1].lon_deg, ring[1].lat_deg);
   for (guint c = 0; c < n_clicks; c++)
     {
       double want = whole * (c + start) / n_clicks;
@@ -67,7 +79,8 @@ person (const TfOutline *agreed, GRand *rand)
   const TfVertex *ring = tf_outline_get_ring (agreed, 0, FALSE, &n);
   tf_outline_get_cap (agreed, &lon, &lat, &radius);
   double size = fmax (0.35, 0.05 * radius);
-  double margin = size * normal (rand), west = 0.5 * size * normal (rand), north = 0.5 * size * normal (rand);
+  double margin = size * normal (rand), west = 0.5 * size * normal (rand),
+         north = 0.5 * size * normal (rand);
   click_ring (ring, n, clicks, n_clicks, g_rand_double (rand));
   for (guint k = 0; k < n_clicks; k++)
     miss[k] = size * normal (rand);
@@ -75,7 +88,8 @@ person (const TfOutline *agreed, GRand *rand)
     {
       double shared = 0.5 * (miss[(k + n_clicks - 1) % n_clicks] + miss[(k + 1) % n_clicks]);
       double out = margin + (miss[k] + shared) / sqrt (1.5);
-      double c = cos (lat * TF_DEG), dx = tf_wrap_180 (clicks[k].lon_deg - lon) * c, dy = clicks[k].lat_deg - lat;
+      double c = cos (lat * TF_DEG), dx = tf_wrap_180 (clicks[k].lon_deg - lon) * c,
+             dy = clicks[k].lat_deg - lat;
       double r = hypot (dx, dy), scale = fmax (0.1, (r + out) / r);
       clicks[k].lon_deg = lon + (west + dx * scale) / c;
       clicks[k].lat_deg = lat + north + dy * scale;
@@ -117,7 +131,8 @@ take (const TfMeasure *m, const TfMeasure *of, double v[QUANTITIES])
 
 /* What the outline term is: sigma without noise and floor. */
 static void
-terms_of (const TfFrame *frame, const TfOutline *outline, TfMeasureParams params, double v[QUANTITIES])
+terms_of (const TfFrame *frame, const TfOutline *outline, TfMeasureParams params,
+          double v[QUANTITIES])
 {
   g_auto (TfMeasure) with = { 0 };
   g_auto (TfMeasure) without = { 0 };
@@ -132,8 +147,8 @@ terms_of (const TfFrame *frame, const TfOutline *outline, TfMeasureParams params
 }
 
 static void
-compare_region (const TfFrame *frame, const TfHint *hint, const TfMeasureParams *params, GRand *rand,
-                double ratio[QUANTITIES])
+compare_region (const TfFrame *frame, const TfHint *hint, const TfMeasureParams *params,
+                GRand *rand, double ratio[QUANTITIES])
 {
   double values[QUANTITIES][PEOPLE], v[QUANTITIES], terms[QUANTITIES];
   for (guint k = 0; k < PEOPLE; k++)
@@ -153,9 +168,10 @@ compare_region (const TfFrame *frame, const TfHint *hint, const TfMeasureParams 
       spread[q] = mad (values[q], PEOPLE);
       ratio[q] = terms[q] / spread[q];
     }
-  g_test_message ("N%+.0f W%+.0f: tilt term %.2f, people %.2f deg; separation %.2f, %.2f deg; fluxes %.1e, %.1e and %.1e, %.1e Mx",
-                  hint->measure.lat_deg, hint->measure.cmd_deg, terms[0], spread[0], terms[1], spread[1], terms[2], spread[2],
-                  terms[3], spread[3]);
+  g_test_message ("N%+.0f W%+.0f: tilt term %.2f, people %.2f deg; separation %.2f, %.2f deg; "
+                  "fluxes %.1e, %.1e and %.1e, %.1e Mx",
+                  hint->measure.lat_deg, hint->measure.cmd_deg, terms[0], spread[0], terms[1],
+                  spread[1], terms[2], spread[2], terms[3], spread[3]);
 }
 
 static guint
@@ -205,7 +221,8 @@ test_people (void)
   for (guint q = 0; q < QUANTITIES; q++)
     {
       double middle = median (ratios[q], n);
-      g_test_message ("%s: term over people's spread, median of %u regions: %.2f", names[q], n, middle);
+      g_test_message ("%s: term over people's spread, median of %u regions: %.2f", names[q], n,
+                      middle);
       tf_check_between (names[q], middle, 1.0 / 1.5, 1.5);
     }
 }
@@ -213,5 +230,6 @@ test_people (void)
 void
 add_outline_tests (void)
 {
-  g_test_add_func ("/region/outline/the-claimed-term-is-the-spread-of-people's-outlines", test_people);
+  g_test_add_func ("/region/outline/the-claimed-term-is-the-spread-of-people's-outlines",
+                   test_people);
 }

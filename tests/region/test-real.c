@@ -2,8 +2,9 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Real frames: leading polarity, hemisphere and place of nine regions. Source: daily region summaries of others and fluxes summed
- * by hand in fixed boxes, as listed beside the data (INDEX.md); kept outside the project. */
+/* Real frames: leading polarity, hemisphere and place of nine regions. Source: daily region
+ * summaries of others and fluxes summed by hand in fixed boxes, as listed beside the data
+ * (INDEX.md); kept outside the project. */
 
 #include <math.h>
 
@@ -12,14 +13,14 @@
 
 #define FRAME_2011 "mdi.fd_M_96m_lev182.20110401_000000_TAI.data.fits"
 #define FRAME_2010 "mdi.fd_m_96m_lev182.20101015_000000_TAI.data.fits"
-#define CUT_OUT "sdo-hmi_2011-02-14_20-34-12.fits"
+#define CUT_OUT    "sdo-hmi_2011-02-14_20-34-12.fits"
 
 typedef struct
 {
   const char *frame, *name;
-  double lat, cmd;      /* deg; west positive */
+  double lat, cmd; /* deg; west positive */
   int leader;
-  double radius;        /* of the cap that is measured, deg */
+  double radius;               /* of the cap that is measured, deg */
   double shift_lon, shift_lat; /* of the cap against the place in the list */
 } RealRegion;
 
@@ -60,16 +61,18 @@ test_region (gconstpointer data)
       return;
     }
   double l0 = tf_geometry_central_carrington (tf_frame_get_geometry (frame));
-  g_autoptr (TfOutline) cap = tf_outline_new_cap (tf_frame_get_info (frame)->time, l0 + r->cmd + r->shift_lon,
-                                                  r->lat + r->shift_lat, r->radius, 0);
+  g_autoptr (TfOutline) cap
+      = tf_outline_new_cap (tf_frame_get_info (frame)->time, l0 + r->cmd + r->shift_lon,
+                            r->lat + r->shift_lat, r->radius, 0);
   g_auto (TfMeasure) m = { 0 };
   tf_measure_params_init (&params);
   tf_measure_region (&m, frame, cap, &params, &error);
   g_assert_no_error (error);
   g_autofree char *codes = tf_notes_dup_codes (m.cautions);
-  g_test_message ("%s: N%+.1f W%+.1f flux %.2e leader %+d%s tilt %.1f +- %.1f separation %.1f [%s]", r->name, m.lat_deg,
-                  m.cmd_deg, m.flux_unsigned_mx, m.leading_polarity, m.leading_sure ? " sure" : "", m.axis_tilt_deg,
-                  m.tilt_terms.total, m.separation_deg, codes);
+  g_test_message ("%s: N%+.1f W%+.1f flux %.2e leader %+d%s tilt %.1f +- %.1f separation %.1f [%s]",
+                  r->name, m.lat_deg, m.cmd_deg, m.flux_unsigned_mx, m.leading_polarity,
+                  m.leading_sure ? " sure" : "", m.axis_tilt_deg, m.tilt_terms.total,
+                  m.separation_deg, codes);
   g_assert_cmpint (m.leading_polarity, ==, r->leader);
   g_assert_cmpint (m.lat_deg > 0.0, ==, r->lat > 0.0);
   tf_check_near ("latitude", m.lat_deg, r->lat, 4.0);
@@ -109,7 +112,8 @@ test_hints (void)
           for (guint j = 0; j < hints->len; j++)
             {
               const TfHint *hint = g_ptr_array_index (hints, j);
-              double d = tf_sphere_distance (hint->measure.cmd_deg, hint->measure.lat_deg, regions[k].cmd, regions[k].lat);
+              double d = tf_sphere_distance (hint->measure.cmd_deg, hint->measure.lat_deg,
+                                             regions[k].cmd, regions[k].lat);
               if (d < nearest)
                 {
                   nearest = d;
@@ -128,7 +132,10 @@ test_hints (void)
 static void
 test_map_hints (void)
 {
-  TfGeometry g = { .projection = TF_PROJECTION_CEA, .width = 36, .height = 18, .crpix = { 18.5, 9.5 },
+  TfGeometry g = { .projection = TF_PROJECTION_CEA,
+                   .width = 36,
+                   .height = 18,
+                   .crpix = { 18.5, 9.5 },
                    .radius_mm = 695.7 };
   TfHintParams params;
   TfMeasureParams measure;
@@ -150,7 +157,8 @@ add_real_tests (void)
 {
   for (guint k = 0; k < G_N_ELEMENTS (regions); k++)
     {
-      g_autofree char *path = g_strdup_printf ("/region/real/%s-has-its-leader-and-place", regions[k].name);
+      g_autofree char *path
+          = g_strdup_printf ("/region/real/%s-has-its-leader-and-place", regions[k].name);
       g_test_add_data_func (path, &regions[k], test_region);
     }
   g_test_add_func ("/region/hint/named-regions-are-hints-of-their-own", test_hints);

@@ -3,8 +3,9 @@
  */
 #include "region-builder.h"
 
-/* Worked by hand formula and by an independent spherical program for this project's design notes: leading lon, lat,
- * following lon, lat, planar tilt, great-circle tilt at the midpoint, separation. NaN: straddles the equator. */
+/* Worked by hand formula and by an independent spherical program for this project's design
+ * notes: leading lon, lat, following lon, lat, planar tilt, great-circle tilt at the midpoint,
+ * separation. NaN: straddles the equator. */
 static const double vectors[][7] = {
   { 24, 15, 16, 17, 14.5782, 14.5939, 7.9450 },
   { 24, -15, 16, -17, 14.5782, 14.5939, 7.9450 },
