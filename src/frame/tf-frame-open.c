@@ -76,6 +76,7 @@ typedef struct
   guint width, plane;
   double to_gauss, fill;
   float *pixels;
+  TfPyramid *pyramid;
   GMutex mutex;
   GError *error;
 } Reading;
@@ -138,6 +139,7 @@ read_band (guint band, guint first, guint n, guint worker, gpointer data)
     return;
   clean (reading->pixels + (gsize)first * reading->width, (gsize)n * reading->width,
          (float)reading->to_gauss, (float)reading->fill);
+  tf_pyramid_add_band (reading->pyramid, reading->pixels, first, n, worker);
 }
 
 static gboolean
@@ -151,8 +153,8 @@ cancelled (const TfWork *work, const char *path, GError **error)
 }
 
 static gboolean
-read_pixels (TfFits *fits, const TfFrameInfo *info, guint plane, float *pixels, const TfWork *work,
-             GError **error)
+read_pixels (TfFits *fits, const TfFrameInfo *info, guint plane, float *pixels, TfPyramid *pyramid,
+             const TfWork *work, GError **error)
 {
   guint height = tf_fits_get_height (fits);
   TfWork serial
@@ -166,9 +168,12 @@ read_pixels (TfFits *fits, const TfFrameInfo *info, guint plane, float *pixels, 
                       .plane = plane,
                       .to_gauss = info->to_gauss,
                       .fill = info->fill_value,
-                      .pixels = pixels };
+                      .pixels = pixels,
+                      .pyramid = pyramid };
   g_mutex_init (&reading.mutex);
+  tf_pyramid_open (pyramid, reading.width, height, use);
   tf_bands_run (use, height, read_band, &reading);
+  tf_pyramid_close (pyramid);
   g_mutex_clear (&reading.mutex);
   for (guint k = 0; k < n; k++)
     tf_fits_close (handles[k]);
@@ -180,14 +185,15 @@ read_pixels (TfFits *fits, const TfFrameInfo *info, guint plane, float *pixels, 
 
 /* -- what the pixels tell -------------------------------------------------------------------- */
 
-/* Off the disk: one value that nearly all pixels hold is a fill, not a field. */
-static void
+/* Off the disk: one value that nearly all pixels hold is a fill, not a field.
+ * Returns: whether pixels were changed. */
+static gboolean
 drop_fill (float *pixels, TfFrameInfo *info)
 {
   const TfGeometry *g = &info->geometry;
   double cx, cy, r = tf_geometry_disk_radius (g);
   if (g->projection != TF_PROJECTION_TAN || !tf_geometry_disk_centre (g, &cx, &cy) || !(r > 0))
-    return;
+    return FALSE;
   guint n = 0, same = 0, step = MAX (1, MAX (g->width, g->height) / 256);
   float fill = NAN;
   for (guint pass = 0; pass < 2; pass++)
@@ -206,7 +212,7 @@ drop_fill (float *pixels, TfFrameInfo *info)
             }
         }
   if (n < 20 || same < 0.95 * n)
-    return;
+    return FALSE;
   tf_notes_add (info->repairs, "fill-off-disk", "d", (double)fill);
   info->fill_value = (double)fill;
   for (guint y = 0; y < g->height; y++)
@@ -217,6 +223,7 @@ drop_fill (float *pixels, TfFrameInfo *info)
         if (*v <= fill && *v >= fill && (off || fabsf (fill) > 5000))
           *v = NAN;
       }
+  return TRUE;
 }
 
 /* Share of the pixels well on the disk (of all on maps) without a value. */
@@ -299,16 +306,23 @@ open_role (const char *path, const TfFrameSpec *spec, TfRole wanted, const TfWor
                    tf_fits_get_width (fits), tf_fits_get_height (fits));
       return NULL;
     }
-  if (!read_pixels (fits, info, plane, tf_pixels_get (pixels), work, error)
+  g_auto (TfPyramid) pyramid = { 0 };
+  if (!read_pixels (fits, info, plane, tf_pixels_get (pixels), &pyramid, work, error)
       || cancelled (work, path, error))
     {
       tf_pixels_unref (pixels);
       return NULL;
     }
-  drop_fill (tf_pixels_get (pixels), info);
+  if (drop_fill (tf_pixels_get (pixels), info))
+    {
+      tf_pyramid_clear (&pyramid);
+      tf_pyramid_make (&pyramid, tf_pixels_get (pixels), tf_fits_get_width (fits),
+                       tf_fits_get_height (fits), work);
+    }
   if (wanted == TF_ROLE_FIELD)
     judge_pixels (tf_pixels_get (pixels), info);
-  return tf_frame_new_take (g_steal_pointer (&info), pixels, path, tf_fits_get_hdu (fits), work);
+  return tf_frame_new_take (g_steal_pointer (&info), pixels, &pyramid, path,
+                            tf_fits_get_hdu (fits), work);
 }
 
 TfFrame *

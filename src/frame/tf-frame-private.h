@@ -4,8 +4,9 @@
 #pragma once
 
 #include "tf-frame.h"
+#include "tf-pyramid-private.h"
 
-/** tf_frame_new_take: @info and @pixels are taken; noise unless the role is INTENSITY. NULL: no
- * memory. */
-TfFrame *tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu,
-                            const TfWork *work);
+/** tf_frame_new_take: @info, @pixels and what is in @pyramid are taken; noise unless the role is
+ * INTENSITY. */
+TfFrame *tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, TfPyramid *pyramid,
+                            const char *path, int hdu, const TfWork *work);

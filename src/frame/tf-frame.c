@@ -17,15 +17,14 @@ struct _TfFrame
   char *path;
   int hdu;
   TfNoise noise;
-  TfLevel levels[TF_MAX_LEVELS]; /* [0] is level 1 */
-  guint n_levels;
+  TfPyramid pyramid;
 };
 
 G_DEFINE_QUARK (tf - frame - error, tf_frame_error)
 
 TfFrame *
-tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hdu,
-                   const TfWork *work)
+tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, TfPyramid *pyramid, const char *path,
+                   int hdu, const TfWork *work)
 {
   TfFrame *frame = g_atomic_rc_box_new0 (TfFrame);
   frame->info = info;
@@ -35,7 +34,8 @@ tf_frame_new_take (TfFrameInfo *info, TfPixels *pixels, const char *path, int hd
   frame->noise.correlation = 1;
   const float *values = tf_pixels_get (pixels);
   const TfGeometry *g = &info->geometry;
-  frame->n_levels = tf_pyramid_make (values, g->width, g->height, work, frame->levels);
+  frame->pyramid = *pyramid;
+  *pyramid = (TfPyramid){ 0 };
   if (info->role != TF_ROLE_INTENSITY)
     tf_noise_measure (values, g, work, &frame->noise);
   return frame;
@@ -54,7 +54,9 @@ tf_frame_new (TfFrameInfo *info, const float *pixels, const TfWork *work)
       return NULL;
     }
   memcpy (tf_pixels_get (copy), pixels, n * sizeof (float));
-  return tf_frame_new_take (info, copy, "", 1, work);
+  TfPyramid pyramid;
+  tf_pyramid_make (&pyramid, pixels, info->geometry.width, info->geometry.height, work);
+  return tf_frame_new_take (info, copy, &pyramid, "", 1, work);
 }
 
 TfFrame *
@@ -68,12 +70,9 @@ tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const 
   other->pixels = tf_pixels_ref (frame->pixels);
   other->path = g_strdup (frame->path);
   other->hdu = frame->hdu;
-  other->n_levels = frame->n_levels;
-  for (guint k = 0; k < frame->n_levels; k++)
-    {
-      other->levels[k] = frame->levels[k];
-      tf_pixels_ref (other->levels[k].pixels);
-    }
+  other->pyramid = frame->pyramid;
+  for (guint k = 0; k < other->pyramid.n; k++)
+    tf_pixels_ref (other->pyramid.levels[k].pixels);
   other->noise.correlation = 1;
   if (other->info->role != TF_ROLE_INTENSITY)
     tf_noise_measure (tf_pixels_get (other->pixels), geometry, work, &other->noise);
@@ -90,8 +89,7 @@ static void
 frame_clear (gpointer data)
 {
   TfFrame *frame = data;
-  for (guint k = 0; k < frame->n_levels; k++)
-    tf_pixels_unref (frame->levels[k].pixels);
+  tf_pyramid_clear (&frame->pyramid);
   tf_pixels_unref (frame->pixels);
   tf_frame_info_free (frame->info);
   g_free (frame->path);
@@ -185,11 +183,11 @@ tf_frame_noise_correlation (const TfFrame *frame)
 const float *
 tf_frame_get_level (const TfFrame *frame, guint level, guint *width, guint *height)
 {
-  if (level > frame->n_levels)
+  if (level > frame->pyramid.n)
     return NULL;
   const TfGeometry *g = &frame->info->geometry;
   TfLevel zero = { frame->pixels, g->width, g->height };
-  const TfLevel *l = level == 0 ? &zero : &frame->levels[level - 1];
+  const TfLevel *l = level == 0 ? &zero : &frame->pyramid.levels[level - 1];
   if (width != NULL)
     *width = l->width;
   if (height != NULL)

@@ -20,8 +20,29 @@ typedef struct
   guint width, height;
 } TfLevel;
 
-/** tf_pyramid_make: levels 1, 2 ... until a side is 64 or less, into @levels (at most
- * TF_MAX_LEVELS).
- * Returns: how many; fewer when memory is short. */
-guint tf_pyramid_make (const float *pixels, guint width, guint height, const TfWork *work,
-                       TfLevel *levels);
+/** TfPyramid: made band by band, while a band's pixels are still in the processor's cache. */
+typedef struct
+{
+  TfLevel levels[TF_MAX_LEVELS]; /* [0] is level 1 */
+  guint n;                       /* until a side is 64 or less; fewer when memory is short */
+  guint width, height;           /* of level 0 */
+  guint n_workers;
+  float *room; /* a worker's weights, while the pyramid is made */
+  gsize room_size;
+  float *weight; /* of the last level that bands make */
+} TfPyramid;
+
+/** tf_pyramid_open: memory for all of it, and room for the workers of @work. */
+void tf_pyramid_open (TfPyramid *pyramid, guint width, guint height, const TfWork *work);
+/** tf_pyramid_add_band: a TfBandFunc's rows; @pixels: of the whole level 0. Threads: a @worker
+ * each. */
+void tf_pyramid_add_band (TfPyramid *pyramid, const float *pixels, guint first, guint n,
+                          guint worker);
+/** tf_pyramid_close: what lies above the bands, once all were added; the room is given back. */
+void tf_pyramid_close (TfPyramid *pyramid);
+/** tf_pyramid_make: open, all bands, close. */
+void tf_pyramid_make (TfPyramid *pyramid, const float *pixels, guint width, guint height,
+                      const TfWork *work);
+void tf_pyramid_clear (TfPyramid *pyramid);
+
+G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfPyramid, tf_pyramid_clear)

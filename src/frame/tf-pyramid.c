@@ -7,7 +7,8 @@
 
 enum
 {
-  SMALLEST = 64
+  SMALLEST = 64,
+  BAND_LEVELS = 6, /* a band's 64 rows are one row of that level */
 };
 
 /* One step: every box of 2 x 2 of the level below, weighted by how many frame pixels stand in
@@ -77,10 +78,9 @@ edge_box (const Step *step, guint x, guint y)
 }
 
 static void
-step_rows (guint band, guint first, guint n, guint worker, gpointer data)
+step_rows (const Step *step)
 {
-  const Step *step = data;
-  for (guint y = first; y < first + n; y++)
+  for (guint y = 0; y < (step->below_height + 1) / 2; y++)
     {
       gsize at = (gsize)y * step->width, below = (gsize)2 * y * step->below_width;
       guint done = 2 * y + 1 < step->below_height ? step->below_width / 2 : 0;
@@ -95,38 +95,121 @@ step_rows (guint band, guint first, guint n, guint worker, gpointer data)
     }
 }
 
-guint
-tf_pyramid_make (const float *pixels, guint width, guint height, const TfWork *work,
-                 TfLevel *levels)
+/* The level just made is the one below. */
+static void
+step_up (Step *step)
 {
-  TfPool *pool = work != NULL ? work->pool : NULL;
-  TfWork whole = { .pool = pool, .workers = work != NULL ? work->workers : NULL };
-  TfPixels *weights = NULL;
-  guint n = 0;
-  Step step = { .below = pixels, .below_width = width, .below_height = height };
-  while (MAX (step.below_width, step.below_height) > SMALLEST && n < TF_MAX_LEVELS)
+  step->below = step->mean;
+  step->below_weight = step->weight;
+  step->below_height = (step->below_height + 1) / 2;
+  step->below_width = step->width;
+}
+
+static gsize
+row_half (guint width, guint level)
+{
+  return ((gsize)width >> level) + 1;
+}
+
+void
+tf_pyramid_open (TfPyramid *pyramid, guint width, guint height, const TfWork *work)
+{
+  guint w = width, h = height;
+  *pyramid = (TfPyramid){ .width = width, .height = height };
+  while (MAX (w, h) > SMALLEST && pyramid->n < TF_MAX_LEVELS)
     {
-      guint w = (step.below_width + 1) / 2, h = (step.below_height + 1) / 2;
-      TfPixels *mean = tf_pixels_new (pool, (gsize)w * h),
-               *weight = tf_pixels_new (pool, (gsize)w * h);
-      if (mean == NULL || weight == NULL)
-        {
-          tf_pixels_unref (mean);
-          tf_pixels_unref (weight);
-          break;
-        }
-      step.mean = tf_pixels_get (mean);
-      step.weight = tf_pixels_get (weight);
-      step.width = w;
-      tf_bands_run (&whole, h, step_rows, &step);
-      tf_pixels_unref (weights);
-      weights = weight;
-      levels[n++] = (TfLevel){ mean, w, h };
-      step.below = step.mean;
-      step.below_weight = step.weight;
-      step.below_width = w;
-      step.below_height = h;
+      w = (w + 1) / 2;
+      h = (h + 1) / 2;
+      TfPixels *pixels = tf_pixels_new (work != NULL ? work->pool : NULL, (gsize)w * h);
+      if (pixels == NULL)
+        break;
+      pyramid->levels[pyramid->n++] = (TfLevel){ pixels, w, h };
     }
-  tf_pixels_unref (weights);
-  return n;
+  pyramid->n_workers = tf_workers_get_n (work != NULL ? work->workers : NULL);
+  pyramid->room_size = (TF_BAND_ROWS / 2) * row_half (width, 1) + (TF_BAND_ROWS / 4) * row_half (width, 2);
+  pyramid->room = g_new (float, pyramid->room_size * pyramid->n_workers);
+  if (pyramid->n >= BAND_LEVELS)
+    {
+      const TfLevel *last = &pyramid->levels[BAND_LEVELS - 1];
+      pyramid->weight = g_new (float, (gsize)last->width * last->height);
+    }
+}
+
+void
+tf_pyramid_add_band (TfPyramid *pyramid, const float *pixels, guint first, guint n, guint worker)
+{
+  float *even = pyramid->room + worker * pyramid->room_size;
+  float *odd = even + (TF_BAND_ROWS / 2) * row_half (pyramid->width, 1);
+  Step step = { .below = pixels + (gsize)first * pyramid->width,
+                .below_width = pyramid->width,
+                .below_height = n };
+  for (guint k = 0; k < MIN (pyramid->n, BAND_LEVELS); k++)
+    {
+      const TfLevel *level = &pyramid->levels[k];
+      gsize at = (gsize)(first >> (k + 1)) * level->width;
+      step.mean = tf_pixels_get (level->pixels) + at;
+      step.weight = k + 1 == BAND_LEVELS ? pyramid->weight + at : k % 2 == 0 ? even : odd;
+      step.width = level->width;
+      step_rows (&step);
+      step_up (&step);
+    }
+}
+
+void
+tf_pyramid_close (TfPyramid *pyramid)
+{
+  float *weight = g_steal_pointer (&pyramid->weight);
+  for (guint k = BAND_LEVELS; k < pyramid->n; k++)
+    {
+      const TfLevel *below = &pyramid->levels[k - 1], *level = &pyramid->levels[k];
+      float *next = g_new (float, (gsize)level->width * level->height);
+      Step step = { .below = tf_pixels_get (below->pixels),
+                    .below_weight = weight,
+                    .below_width = below->width,
+                    .below_height = below->height,
+                    .mean = tf_pixels_get (level->pixels),
+                    .weight = next,
+                    .width = level->width };
+      step_rows (&step);
+      g_free (weight);
+      weight = next;
+    }
+  g_free (weight);
+  g_clear_pointer (&pyramid->room, g_free);
+}
+
+typedef struct
+{
+  TfPyramid *pyramid;
+  const float *pixels;
+} Making;
+
+static void
+make_band (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  const Making *making = data;
+  tf_pyramid_add_band (making->pyramid, making->pixels, first, n, worker);
+}
+
+void
+tf_pyramid_make (TfPyramid *pyramid, const float *pixels, guint width, guint height,
+                 const TfWork *work)
+{
+  Making making = { pyramid, pixels };
+  /* Not to be cancelled: never half a pyramid. */
+  TfWork whole = { .pool = work != NULL ? work->pool : NULL,
+                   .workers = work != NULL ? work->workers : NULL };
+  tf_pyramid_open (pyramid, width, height, &whole);
+  tf_bands_run (&whole, height, make_band, &making);
+  tf_pyramid_close (pyramid);
+}
+
+void
+tf_pyramid_clear (TfPyramid *pyramid)
+{
+  for (guint k = 0; k < pyramid->n; k++)
+    tf_pixels_unref (pyramid->levels[k].pixels);
+  g_free (pyramid->room);
+  g_free (pyramid->weight);
+  *pyramid = (TfPyramid){ 0 };
 }

@@ -308,7 +308,7 @@ tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale
   gsize cells = (gsize)g->n * g->n;
   Pass pass = { .grid = g, .scale = scale, .radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL };
   choose_level (&pass, frame, params->cell_mm);
-  g_autoptr (TfPixels) room = tf_pixels_new (work != NULL ? work->pool : NULL, 2 * STRIPES * cells);
+  g_autoptr (TfPixels) room = tf_pixels_new (NULL, 2 * STRIPES * cells); /* given back before regions are measured */
   if (room == NULL)
     return g_free (g), NULL;
   pass.sums = tf_pixels_get (room);
