@@ -139,6 +139,8 @@ tf_frame_item_dup_counts (TfFrameItem *self)
     g_string_append (text, "\n");
   if (row->n_hints > 0)
     g_string_append_printf (text, ngettext ("%u hint", "%u hints", row->n_hints), row->n_hints);
+  if (row->n_hints == 0)
+    g_string_append_printf (text, "\n%s", _ ("done"));
   return g_string_free (text, FALSE);
 }
 

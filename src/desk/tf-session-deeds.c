@@ -53,7 +53,7 @@ tf_session_can_keep (TfSession *self)
   if (self->draft != NULL)
     return self->measured;
   const TfRow *row = chosen_row (self);
-  return row != NULL && row->is_hint;
+  return row != NULL && row->is_hint && row->mark != self->judging;
 }
 
 static void
@@ -94,7 +94,10 @@ tf_session_keep (TfSession *self)
       self->keeping = TRUE;
     }
   else
-    fill_from_hint (deed, chosen_row (self));
+    {
+      fill_from_hint (deed, chosen_row (self));
+      self->judging = deed->hint;
+    }
   return push (self, deed);
 }
 
@@ -102,7 +105,8 @@ gboolean
 tf_session_can_drop (TfSession *self)
 {
   const TfRow *row = chosen_row (self);
-  return tf_session_is_writable (self) && self->draft == NULL && row != NULL && row->is_hint;
+  return tf_session_is_writable (self) && self->draft == NULL && row != NULL && row->is_hint
+         && row->mark != self->judging;
 }
 
 gboolean
@@ -112,7 +116,7 @@ tf_session_drop (TfSession *self)
   if (!tf_session_can_drop (self) || !has_person (self))
     return FALSE;
   TfDeed *deed = deed_new (self, TF_DEED_DROP);
-  deed->hint = chosen_row (self)->mark;
+  self->judging = deed->hint = chosen_row (self)->mark;
   return push (self, deed);
 }
 
@@ -126,7 +130,7 @@ tf_session_can_describe (TfSession *self)
 gboolean
 tf_session_can_withdraw (TfSession *self)
 {
-  return tf_session_can_describe (self);
+  return tf_session_can_describe (self) && chosen_row (self)->mark != self->judging;
 }
 
 gboolean
@@ -136,7 +140,7 @@ tf_session_withdraw (TfSession *self)
   if (!tf_session_can_withdraw (self) || !has_person (self))
     return FALSE;
   TfDeed *deed = deed_new (self, TF_DEED_WITHDRAW);
-  deed->follows = chosen_row (self)->mark;
+  self->judging = deed->follows = chosen_row (self)->mark;
   return push (self, deed);
 }
 
@@ -280,6 +284,7 @@ refused (TfWriter *writer, TfDeed *deed, const char *message, TfSession *self)
 {
   if (deed->kind == TF_DEED_KEEP)
     self->keeping = FALSE;
+  self->judging = 0;
   g_clear_pointer (&self->saved, g_free);
   tf_session_say (self, message);
   tf_session_refresh (self, FALSE);
@@ -331,6 +336,7 @@ tf_session_give_up (TfSession *self)
   if (self->writer == NULL)
     return;
   self->keeping = FALSE; /* the draft stays on the plate */
+  self->judging = 0;
   g_clear_pointer (&self->saved, g_free);
   tf_writer_give_up (self->writer);
 }

@@ -80,13 +80,16 @@ tf_session_drop_draft (TfSession *self)
   forget_measure (self);
 }
 
-/* The stored draft follows the one on the plate. */
-static void
-store_draft (TfSession *self)
+void
+tf_session_store_draft (TfSession *self)
 {
-  if (self->writer == NULL || self->person == NULL || self->frame_item == NULL
-      || !tf_session_is_writable (self))
+  if (self->writer == NULL || self->frame_item == NULL || !tf_session_is_writable (self))
     return;
+  if (self->person == NULL)
+    {
+      tf_session_emit (self, TF_SIGNAL_PERSON_NEEDED); /* stored when there is a name */
+      return;
+    }
   TfDeed *deed = tf_deed_new (TF_DEED_DRAFT, self->person);
   deed->frame = tf_frame_item_get_row (self->frame_item)->id;
   deed->text = self->draft != NULL ? tf_outline_dup_text (self->draft) : NULL;
@@ -101,7 +104,7 @@ tf_session_discard_draft (TfSession *self)
   tf_session_drop_draft (self);
   self->draft_looked = TRUE;
   if (stored)
-    store_draft (self);
+    tf_session_store_draft (self);
   tf_session_judge_choice (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
@@ -337,7 +340,7 @@ tf_session_set_draft (TfSession *self, TfOutline *outline)
   if (self->frame == NULL)
     return;
   take_draft (self, tf_outline_ref (outline));
-  store_draft (self);
+  tf_session_store_draft (self);
 }
 
 gboolean
@@ -367,7 +370,7 @@ tf_session_finish_line (TfSession *self)
     }
   take_draft (self,
               freehand ? tf_outline_simplify (outline, simplify_deg) : tf_outline_ref (outline));
-  store_draft (self);
+  tf_session_store_draft (self);
   return TRUE;
 }
 

@@ -26,7 +26,7 @@ typedef struct
   GPtrArray *frames; /* all of them, when asked */
   TfFrameRow *row;   /* else the one */
   GPtrArray *rows;   /* of the frame */
-  GArray *points, *dots;
+  GArray *points, *dots, *mark_dots;
   char *read_only, *draft;
   char **notices;
   gboolean can_undo, can_redo;
@@ -43,20 +43,22 @@ reading_free (gpointer data)
   g_clear_pointer (&r->rows, g_ptr_array_unref);
   g_clear_pointer (&r->points, g_array_unref);
   g_clear_pointer (&r->dots, g_array_unref);
+  g_clear_pointer (&r->mark_dots, g_array_unref);
   g_free (r->read_only);
   g_free (r->draft);
   g_strfreev (r->notices);
   g_free (r);
 }
 
-static GArray *
-make_dots (const GArray *points, const TfJudge *judge)
+static void
+make_dots (Reading *r)
 {
-  GArray *dots = g_array_sized_new (FALSE, FALSE, sizeof (TfWingsDot), points->len);
-  for (guint k = 0; k < points->len; k++)
+  r->dots = g_array_sized_new (FALSE, FALSE, sizeof (TfWingsDot), r->points->len);
+  r->mark_dots = g_array_new (FALSE, FALSE, sizeof (TfWingsDot));
+  for (guint k = 0; k < r->points->len; k++)
     {
-      const TfPoint *p = &g_array_index (points, TfPoint, k);
-      TfVerdict verdict = tf_judge_point (judge, p);
+      const TfPoint *p = &g_array_index (r->points, TfPoint, k);
+      TfVerdict verdict = tf_judge_point (r->judge, p);
       TfWingsDot dot = { .year = p->year,
                          .lat_deg = p->lat_deg,
                          .flux_mx = p->flux_mx,
@@ -64,9 +66,10 @@ make_dots (const GArray *points, const TfJudge *judge)
                          .verdict = (gint8)verdict.kind,
                          .hint = p->hint,
                          .id = (gint64)k + 1 };
-      g_array_append_val (dots, dot);
+      g_array_append_val (r->dots, dot);
+      if (!p->hint)
+        g_array_append_val (r->mark_dots, dot);
     }
-  return dots;
 }
 
 static char **
@@ -137,7 +140,7 @@ read_in_lane (TfLedger *ledger, gpointer data, GError **error)
       reading_free (r);
       return NULL;
     }
-  r->dots = make_dots (r->points, r->judge);
+  make_dots (r);
   return r;
 }
 
@@ -180,7 +183,8 @@ take_reading (TfSession *self, Reading *r)
       tf_session_replace_regions (self, r->rows);
       tf_session_restore_draft (self, r->draft);
     }
-  tf_session_replace_points (self, g_steal_pointer (&r->points), g_steal_pointer (&r->dots));
+  tf_session_replace_points (self, g_steal_pointer (&r->points), g_steal_pointer (&r->dots),
+                             g_steal_pointer (&r->mark_dots));
   tf_session_emit (self, TF_SIGNAL_STATUS);
 }
 
@@ -299,7 +303,7 @@ tf_session_open_ledger (TfSession *self, const char *path, char letter)
   g_return_if_fail (TF_IS_SESSION (self) && path != NULL);
   tf_session_close (self);
   tf_session_clear_frames (self);
-  tf_session_replace_points (self, NULL, NULL);
+  tf_session_replace_points (self, NULL, NULL, NULL);
   g_autoptr (GFile) file = g_file_new_for_commandline_arg (path);
   self->path = g_file_get_path (file);
   if (self->path == NULL)
@@ -367,6 +371,8 @@ tf_session_set_person (TfSession *self, const char *name)
   self->wrote = self->can_undo = self->can_redo = FALSE;
   if (self->reader != NULL)
     tf_lane_reopen (self->reader);
+  if (self->draft != NULL)
+    tf_session_store_draft (self);
   tf_session_emit (self, TF_SIGNAL_LEDGER);
   tf_session_refresh (self, FALSE);
 }

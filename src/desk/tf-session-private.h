@@ -85,6 +85,7 @@ struct _TfSession
   guint64 draft_serial;
   gboolean at_rest;
   gboolean keeping;      /* the draft is on its way into the ledger */
+  gint64 judging;        /* the hint or mark whose deed is on its way: not judged twice */
   gboolean draft_looked; /* the ledger was asked for a draft on this frame */
   char *draft_text;      /* came before the pixels */
   gboolean slow;         /* the line in hand is too large to be measured while it is drawn */
@@ -94,10 +95,9 @@ struct _TfSession
   TfSampleRow sample;
   TfVerdict verdict;
 
-  GArray *points; /* TfPoint */
-  GArray *dots;   /* TfWingsDot of those shown */
-  GArray *all_dots;
-  guint n_marks, n_hints;
+  GArray *points;    /* TfPoint */
+  GArray *all_dots;  /* TfWingsDot, one a point */
+  GArray *mark_dots; /* TfWingsDot, of marks alone */
   gboolean show_hints;
   double pick_from, pick_to;
 };
@@ -111,7 +111,10 @@ TfFrameItem *tf_session_find_frame (TfSession *session, gint64 id);
 /** tf_session_replace_regions: (element-type TfRow): takes the rows out of the array */
 void tf_session_replace_regions (TfSession *session, GPtrArray *rows);
 /** tf_session_replace_points: (transfer full) */
-void tf_session_replace_points (TfSession *session, GArray *points, GArray *dots);
+void
+tf_session_replace_points (TfSession *session, GArray *points, GArray *dots, GArray *mark_dots);
+/** tf_session_store_draft: the stored draft follows the one on the plate. */
+void tf_session_store_draft (TfSession *session);
 void tf_session_judge_choice (TfSession *session);
 void tf_session_drop_draft (TfSession *session);
 void tf_session_update_pick (TfSession *session);

@@ -8,43 +8,21 @@
 
 #include <math.h>
 
-/* Marks always; hints when they are to be shown. */
-static void
-choose_dots (TfSession *self)
+static GArray *
+dots_or_none (GArray *dots)
 {
-  GArray *dots = g_array_sized_new (FALSE, FALSE, sizeof (TfWingsDot), self->all_dots->len);
-  for (guint k = 0; k < self->all_dots->len; k++)
-    {
-      const TfWingsDot *dot = &g_array_index (self->all_dots, TfWingsDot, k);
-      if (self->show_hints || !dot->hint)
-        g_array_append_vals (dots, dot, 1);
-    }
-  g_array_unref (self->dots);
-  self->dots = dots;
-}
-
-static void
-count_dots (TfSession *self)
-{
-  self->n_marks = self->n_hints = 0;
-  for (guint k = 0; k < self->all_dots->len; k++)
-    {
-      if (g_array_index (self->all_dots, TfWingsDot, k).hint)
-        self->n_hints++;
-      else
-        self->n_marks++;
-    }
+  return dots != NULL ? dots : g_array_new (FALSE, FALSE, sizeof (TfWingsDot));
 }
 
 void
-tf_session_replace_points (TfSession *self, GArray *points, GArray *dots)
+tf_session_replace_points (TfSession *self, GArray *points, GArray *dots, GArray *mark_dots)
 {
-  g_array_unref (self->points);
-  g_array_unref (self->all_dots);
+  g_clear_pointer (&self->points, g_array_unref);
+  g_clear_pointer (&self->all_dots, g_array_unref);
+  g_clear_pointer (&self->mark_dots, g_array_unref);
   self->points = points != NULL ? points : g_array_new (FALSE, FALSE, sizeof (TfPoint));
-  self->all_dots = dots != NULL ? dots : g_array_new (FALSE, FALSE, sizeof (TfWingsDot));
-  count_dots (self);
-  choose_dots (self);
+  self->all_dots = dots_or_none (dots);
+  self->mark_dots = dots_or_none (mark_dots);
   tf_session_emit (self, TF_SIGNAL_POINTS);
 }
 
@@ -52,14 +30,14 @@ GArray *
 tf_session_get_dots (TfSession *self, guint *n_hidden)
 {
   if (n_hidden != NULL)
-    *n_hidden = self->show_hints ? 0 : self->n_hints;
-  return self->dots;
+    *n_hidden = self->show_hints ? 0 : self->all_dots->len - self->mark_dots->len;
+  return self->show_hints ? self->all_dots : self->mark_dots;
 }
 
 guint
 tf_session_get_n_marks (TfSession *self)
 {
-  return self->n_marks;
+  return self->mark_dots->len;
 }
 
 gboolean
@@ -73,7 +51,6 @@ tf_session_set_show_hints (TfSession *self, gboolean show)
 {
   g_return_if_fail (TF_IS_SESSION (self));
   self->show_hints = show;
-  choose_dots (self);
   tf_session_emit (self, TF_SIGNAL_POINTS);
 }
 

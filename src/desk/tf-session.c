@@ -59,8 +59,8 @@ finalize (GObject *object)
   tf_measure_clear (&self->measure);
   g_array_unref (self->line);
   g_array_unref (self->points);
-  g_array_unref (self->dots);
   g_array_unref (self->all_dots);
+  g_array_unref (self->mark_dots);
   g_free (self->measure_problem);
   g_free (self->frame_problem);
   g_free (self->saved);
@@ -94,9 +94,6 @@ init_lists (TfSession *self)
   self->frames = g_list_store_new (TF_TYPE_FRAME_ITEM);
   self->regions = g_list_store_new (TF_TYPE_REGION_ITEM);
   self->line = g_array_new (FALSE, FALSE, sizeof (TfVertex));
-  self->points = g_array_new (FALSE, FALSE, sizeof (TfPoint));
-  self->dots = g_array_new (FALSE, FALSE, 1); /* replaced by tf_session_replace_points() */
-  self->all_dots = g_array_new (FALSE, FALSE, 1);
 }
 
 static void
@@ -108,7 +105,7 @@ tf_session_init (TfSession *self)
   tf_measure_params_init (&self->params);
   self->method = tf_options_dup_canonical (tf_measure_options, &self->params, TF_MEASURE_METHOD);
   init_lists (self);
-  tf_session_replace_points (self, NULL, NULL);
+  tf_session_replace_points (self, NULL, NULL, NULL);
   self->loader = tf_loader_new (self->pool);
   self->north_up = TRUE;
   self->range = DEFAULT_RANGE_GAUSS;
@@ -171,6 +168,8 @@ tf_session_choose_region (TfSession *self, TfRegionItem *item)
     return;
   g_clear_pointer (&self->saved, g_free);
   tf_session_judge_choice (self);
+  if (item != NULL && self->view.look == TF_LOOK_CLOSE && self->draft == NULL)
+    tf_session_fit (self); /* the close look goes with the choice */
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
@@ -231,6 +230,7 @@ tf_session_replace_regions (TfSession *self, GPtrArray *rows)
   guint old = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
   g_list_store_splice (self->regions, 0, old, items->pdata, items->len);
   choose_again (self);
+  self->judging = 0;
   tf_session_judge_choice (self);
   tf_session_emit (self, TF_SIGNAL_REGIONS);
   tf_session_emit (self, TF_SIGNAL_CHOICE);

@@ -167,6 +167,8 @@ keep_and_undo (void)
   g_assert_true (tf_session_step_hint (session, 1));
   g_assert_true (tf_session_can_keep (session));
   g_assert_true (tf_session_keep (session));
+  g_assert_false (tf_session_can_keep (session)); /* on its way: not kept twice */
+  g_assert_false (tf_session_can_drop (session));
   test_desk_wait ("the mark", one_mark, session);
   g_assert_cmpuint (count (session, TRUE), ==, hints - 1);
   g_assert_cmpuint (marks_in_file (path), ==, 1);
