@@ -67,7 +67,7 @@ const TfNoteKind tf_note_kinds_region[] = {
     N_ ("The poles are {0:.0f} Mm apart, near the most that is plausible for this flux ({1:.0f} Mm): it may be two regions. "
         "Split it if so.") },
   { "hint-neighbour-near", TF_NOTE_CAUTION,
-    N_ ("Another region is close by and was kept apart: join the two if they are one.") },
+    N_ ("Another region is less than {0:.0f} Mm away and was kept apart: join the two if they are one.") },
   { "hint-one-sided", TF_NOTE_CAUTION,
     N_ ("{0:.0f} % of the flux is not balanced: part of the other polarity may lie outside the hint.") },
   { "leader-unsure", TF_NOTE_CAUTION,

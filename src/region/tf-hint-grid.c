@@ -17,12 +17,12 @@ enum
   RING_CELLS = 50, /* fewer than this do not make a ring of their own */
   CLIPS = 6,
 };
-static const double MU_PIXEL = 0.21, MU_CELL = 0.26;
+/* Pixels are taken from a little farther out than cells, so that the outermost cells are whole. */
+static const double MU_BEYOND = 0.05;
 /* A pixel of the pyramid this small is fine enough for the grid, in cells. */
 static const double FINE = 0.42;
 /* Cells less covered than this hold nothing. */
 static const double COVERED = 0.05;
-static const double ACTIVE_SHARE = 0.5;
 
 typedef struct
 {
@@ -41,24 +41,38 @@ dot (const double a[3], const double b[3])
   return a[0] * b[0] + a[1] * b[1] + a[2] * b[2];
 }
 
+/* A pixel's flux is shared among the four cells about it, linearly: all in one cell would let the pieces depend on where the
+ * pixels happen to lie. */
+static inline void
+share (float *to, guint n, float x, float y, float value)
+{
+  float low = value * (1.0f - y), high = value * y;
+  to[0] += low * (1.0f - x);
+  to[1] += low * x;
+  to[n] += high * (1.0f - x);
+  to[n + 1] += high * x;
+}
+
 static void
 add_row (const Pass *pass, guint y, double (*unit)[3], double *mu, double *area, float *flux, float *covered)
 {
   const TfHintGrid *g = pass->grid;
   const float *row = pass->pixels + (gsize)y * pass->width;
-  double half = 0.5 * g->n, per_cell = g->radius_mm / g->cell_mm;
+  double half = 0.5 * g->n - 0.5, per_cell = g->radius_mm / g->cell_mm, least_mu = g->edge_mu - MU_BEYOND;
   tf_geometry_row_sun (&pass->geometry, y + 1.0, 1.0, pass->width, unit, mu, area);
   for (guint k = 0; k < pass->width; k++)
     {
-      if (!(mu[k] > MU_PIXEL) || !isfinite (row[k]))
+      if (!(mu[k] > least_mu) || !isfinite (row[k]))
         continue;
       double stretch = per_cell * sqrt (2.0 / (1.0 + dot (unit[k], g->centre)));
       double x = half + stretch * dot (unit[k], g->west), y_cell = half + stretch * dot (unit[k], g->north);
-      if (!(x >= 0.0 && x < g->n && y_cell >= 0.0 && y_cell < g->n))
+      if (!(x >= 0.0 && x < g->n - 1 && y_cell >= 0.0 && y_cell < g->n - 1))
         continue;
-      gsize at = (gsize)y_cell * g->n + (gsize)x;
-      flux[at] += (float)(row[k] * pass->scale * area[k] / (pass->radial ? 1.0 : mu[k]));
-      covered[at] += (float)area[k];
+      guint i = (guint)x, j = (guint)y_cell;
+      gsize at = (gsize)j * g->n + i;
+      float right = (float)(x - i), up = (float)(y_cell - j);
+      share (flux + at, g->n, right, up, (float)(row[k] * pass->scale * area[k] / (pass->radial ? 1.0 : mu[k])));
+      share (covered + at, g->n, right, up, (float)area[k]);
     }
 }
 
@@ -175,7 +189,7 @@ divide (TfHintGrid *g, float *flux, float *area)
   gsize cells = (gsize)g->n * g->n;
   double least = COVERED * g->cell_mm * g->cell_mm;
   for (gsize k = 0; k < cells; k++)
-    g->field[k] = g->mu[k] >= MU_CELL && area[k] > least ? flux[k] / area[k] : NAN;
+    g->field[k] = g->mu[k] >= g->edge_mu && area[k] > least ? flux[k] / area[k] : NAN;
 }
 
 /* -- noise ------------------------------------------------------------------------------------------------- */
@@ -220,9 +234,9 @@ clipped_mad (GArray *sizes)
 }
 
 static guint
-ring_of (double mu)
+ring_of (double mu, double edge)
 {
-  return (guint)CLAMP ((mu - MU_CELL) / (1.0 - MU_CELL) * RINGS, 0.0, RINGS - 1.0);
+  return (guint)CLAMP ((mu - edge) / (1.0 - edge) * RINGS, 0.0, RINGS - 1.0);
 }
 
 /* Rings with too few cells take the value of the nearest good one. */
@@ -234,7 +248,7 @@ fill_rings (const TfHintGrid *g, double sigma[RINGS])
     sizes[r] = g_array_new (FALSE, FALSE, sizeof (float));
   for (gsize k = 0; k < (gsize)g->n * g->n; k++)
     if (isfinite (g->field[k]))
-      g_array_append_val (sizes[ring_of (g->mu[k])], ((float){ fabsf (g->field[k]) }));
+      g_array_append_val (sizes[ring_of (g->mu[k], g->edge_mu)], ((float){ fabsf (g->field[k]) }));
   for (guint r = 0; r < RINGS; r++)
     {
       sigma[r] = sizes[r]->len >= RING_CELLS ? clipped_mad (sizes[r]) : (double)NAN;
@@ -252,9 +266,9 @@ fill_rings (const TfHintGrid *g, double sigma[RINGS])
 }
 
 static double
-sigma_at (const double sigma[RINGS], double mu)
+sigma_at (const double sigma[RINGS], double mu, double edge)
 {
-  double at = (mu - MU_CELL) / (1.0 - MU_CELL) * RINGS - 0.5;
+  double at = (mu - edge) / (1.0 - edge) * RINGS - 0.5;
   at = CLAMP (at, 0.0, RINGS - 1.0);
   guint k = MIN ((guint)at, RINGS - 2);
   return sigma[k] + (at - k) * (sigma[k + 1] - sigma[k]);
@@ -268,13 +282,13 @@ fill_levels (TfHintGrid *g, const TfHintParams *p)
   fill_rings (g, sigma);
   for (gsize k = 0; k < (gsize)g->n * g->n; k++)
     {
-      double low = MAX (p->low_sigma * sigma_at (sigma, g->mu[k]), p->low_gauss);
+      double low = MAX (p->low_sigma * sigma_at (sigma, g->mu[k], g->edge_mu), p->low_gauss);
       g->low[k] = (float)(isnan (low) ? p->low_gauss : low);
       g->high[k] = (float)(g->low[k] * p->high_sigma / p->low_sigma);
       there += isfinite (g->field[k]);
       above += fabsf (g->field[k]) >= (float)p->low_gauss;
     }
-  g->active = (double)above > ACTIVE_SHARE * (double)there;
+  g->active = (double)above > p->active_share * (double)there;
   for (gsize k = 0; k < (gsize)g->n * g->n && g->active; k++)
     {
       g->low[k] = (float)p->low_gauss;
@@ -290,8 +304,9 @@ set_plane (TfHintGrid *g, const TfGeometry *geometry, const TfHintParams *p)
   double lon = tf_geometry_central_carrington (geometry), lat = geometry->observer.b0_deg * TF_DEG;
   g->cell_mm = p->cell_mm;
   g->radius_mm = geometry->radius_mm;
-  /* 2 sin (psi / 2) at mu 0.21 and a margin */
-  g->n = 2 * (guint)ceil (1.32 * g->radius_mm / g->cell_mm);
+  g->edge_mu = p->edge_mu;
+  /* 2 sin (psi / 2) where the last pixels are, and a margin */
+  g->n = 2 * (guint)ceil (1.05 * sqrt (2.0 * (1.0 - p->edge_mu + MU_BEYOND)) * g->radius_mm / g->cell_mm);
   tf_sphere_unit (lon, geometry->observer.b0_deg, g->centre);
   tf_sphere_unit (lon + 90.0, 0.0, g->west);
   g->north[0] = -sin (lat) * cos (lon * TF_DEG);

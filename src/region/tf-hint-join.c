@@ -11,15 +11,6 @@
 #include "tf-constants.h"
 #include "tf-hint-private.h"
 
-static const double LENGTH_MM = 125.0, LENGTH_LEAST_MM = 40.0, LENGTH_MOST_MM = 160.0, LENGTH_FLUX_MX = 1e22;
-static const double BALANCE = 0.05;            /* gain from which a pair balances */
-static const double GAP_MM = 15.0, GAP_SAME_MM = 14.0;
-static const double SAME_WEIGHT = 0.5;         /* of pairs that do not balance */
-static const double NEST_WEAKER = 0.30, NEST_FLUX_MX = 1e21, NEST_SMALL = 0.05;
-static const double SINGLE = 0.15;             /* weaker share below which a cluster is one-signed */
-static const double TIDY_GAP_MM = 12.0, TIDY_WEAKER = 0.25, TIDY_LENGTH = 1.25;
-static const double PLAGE_GAP_MM = 30.0, PLAGE_CENTRES_MM = 120.0;
-
 static TfHintCluster *
 cluster_at (const TfHintPieces *pieces, guint k)
 {
@@ -27,9 +18,9 @@ cluster_at (const TfHintPieces *pieces, guint k)
 }
 
 double
-tf_hint_length (double total_mx)
+tf_hint_length (double total_mx, const TfHintParams *p)
 {
-  return CLAMP (LENGTH_MM * pow (total_mx / LENGTH_FLUX_MX, 0.25), LENGTH_LEAST_MM, LENGTH_MOST_MM);
+  return CLAMP (p->length_mm * pow (total_mx / p->length_mx, 0.25), p->length_least_mm, p->length_most_mm);
 }
 
 static double
@@ -80,7 +71,6 @@ sum_of (const TfHintCluster *a, const TfHintCluster *b)
       for (guint k = 0; k < 3; k++)
         sum.place[sign][k] += b->place[sign][k];
     }
-  sum.nest = a->nest || b->nest;
   return sum;
 }
 
@@ -92,27 +82,28 @@ net (const TfHintCluster *cluster)
 
 /* Two regions that stand for themselves are never made one, however near. */
 static gboolean
-is_nest (const TfHintCluster *a, const TfHintCluster *b)
+is_nest (const TfHintCluster *a, const TfHintCluster *b, const TfHintParams *p)
 {
   double ta = tf_hint_total (a), tb = tf_hint_total (b);
-  return tf_hint_weaker (a) >= NEST_WEAKER && tf_hint_weaker (b) >= NEST_WEAKER && MIN (ta, tb) > NEST_FLUX_MX
-         && MIN (ta, tb) >= NEST_SMALL * MAX (ta, tb);
+  return tf_hint_weaker (a) >= p->nest_weaker && tf_hint_weaker (b) >= p->nest_weaker && MIN (ta, tb) > p->nest_mx
+         && MIN (ta, tb) >= p->nest_small * MAX (ta, tb);
 }
 
 static double
 score_pair (const TfHintPieces *pieces, const TfHintPair *pair)
 {
   const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
+  const TfHintParams *p = pieces->params;
   double radius = pieces->grid->radius_mm, ta = tf_hint_total (a), tb = tf_hint_total (b);
   TfHintCluster sum = sum_of (a, b);
-  double length = tf_hint_length (ta + tb), distance = centre_distance (a, b, radius);
-  if (tf_hint_separation (&sum, radius) > length || distance > 1.3 * length || is_nest (a, b))
+  double length = tf_hint_length (ta + tb, p), distance = centre_distance (a, b, radius);
+  if (tf_hint_separation (&sum, radius) > length || distance > p->centres_share * length || is_nest (a, b, p))
     return 0.0;
   double gain = (net (a) + net (b) - net (&sum)) / (2.0 * MIN (ta, tb));
   double near = exp (-(distance / length) * (distance / length));
-  if (gain >= BALANCE)
-    return gain * exp (-pair->gap_mm / GAP_MM) * near;
-  double score = SAME_WEIGHT * exp (-pair->gap_mm / GAP_SAME_MM) * near;
+  if (gain >= p->balance)
+    return gain * exp (-pair->gap_mm / p->gap_mm) * near;
+  double score = p->same_weight * exp (-pair->gap_mm / p->gap_same_mm) * near;
   const TfHintCluster *larger = ta >= tb ? a : b;
   gboolean grows = net (&sum) / (ta + tb) > net (larger) / tf_hint_total (larger);
   return grows && MIN (ta, tb) >= 0.25 * MAX (ta, tb) ? 0.5 * score : score;
@@ -187,21 +178,23 @@ static gboolean
 leftover_fits (const TfHintPieces *pieces, const TfHintPair *pair)
 {
   const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
-  gboolean one = tf_hint_weaker (a) < SINGLE, two = tf_hint_weaker (b) < SINGLE;
-  if (one == two || pair->gap_mm > TIDY_GAP_MM)
+  const TfHintParams *p = pieces->params;
+  gboolean one = tf_hint_weaker (a) < p->tidy_single, two = tf_hint_weaker (b) < p->tidy_single;
+  if (one == two || pair->gap_mm > p->tidy_mm)
     return FALSE;
   TfHintCluster sum = sum_of (a, b);
-  return tf_hint_weaker (&sum) >= TIDY_WEAKER
-         && tf_hint_separation (&sum, pieces->grid->radius_mm) <= TIDY_LENGTH * tf_hint_length (tf_hint_total (&sum));
+  return tf_hint_weaker (&sum) >= p->tidy_weaker
+         && tf_hint_separation (&sum, pieces->grid->radius_mm) <= p->tidy_length * tf_hint_length (tf_hint_total (&sum), p);
 }
 
 static gboolean
 same_plage (const TfHintPieces *pieces, const TfHintPair *pair)
 {
   const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
-  return tf_hint_weaker (a) < SINGLE && tf_hint_weaker (b) < SINGLE && pair->gap_mm <= PLAGE_GAP_MM
+  const TfHintParams *p = pieces->params;
+  return tf_hint_weaker (a) < p->single_weaker && tf_hint_weaker (b) < p->single_weaker && pair->gap_mm <= p->plage_mm
          && (a->flux[0] > a->flux[1]) == (b->flux[0] > b->flux[1])
-         && centre_distance (a, b, pieces->grid->radius_mm) < PLAGE_CENTRES_MM;
+         && centre_distance (a, b, pieces->grid->radius_mm) < p->plage_centres_mm;
 }
 
 /* Joins pairs that fit, smallest gap first, until none does. */
@@ -223,23 +216,10 @@ tidy (TfHintPieces *pieces, gboolean (*fits) (const TfHintPieces *, const TfHint
     }
 }
 
-static void
-mark_nests (TfHintPieces *pieces)
-{
-  for (guint k = 0; k < pieces->pairs->len; k++)
-    {
-      const TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
-      TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
-      if (pair->gap_mm < GAP_MM && is_nest (a, b))
-        a->nest = b->nest = TRUE;
-    }
-}
-
 void
 tf_hint_join (TfHintPieces *pieces)
 {
   join_by_score (pieces);
   tidy (pieces, leftover_fits);
   tidy (pieces, same_plage);
-  mark_nests (pieces);
 }

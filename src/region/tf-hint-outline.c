@@ -12,9 +12,7 @@
 #include "tf-hint-private.h"
 
 enum { CLOSINGS = 4 };
-static const double CLOSE_MM = 12.0, CLOSE_STEP = 1.5, SMOOTH_MM = 6.0;
-/* Smaller areas would lose too much by smoothing. */
-static const double SMALL_MM2 = 2000.0;
+static const double CLOSE_STEP = 1.5;
 
 typedef struct
 {
@@ -35,7 +33,7 @@ static void
 box_open (Box *box, const TfHintPieces *pieces, guint root)
 {
   guint n = pieces->grid->n, x0 = n, x1 = 0, y0 = n, y1 = 0;
-  guint margin = 3 + (guint)ceil (CLOSE_MM * pow (CLOSE_STEP, CLOSINGS - 1) / pieces->grid->cell_mm);
+  guint margin = 3 + (guint)ceil (pieces->params->close_mm * pow (CLOSE_STEP, CLOSINGS - 1) / pieces->grid->cell_mm);
   for (guint y = 0; y < n; y++)
     for (guint x = 0; x < n; x++)
       if (is_own (pieces, pieces->piece[(gsize)y * n + x], root))
@@ -138,11 +136,11 @@ count_parts (const Box *box)
 }
 
 static void
-close_shape (Box *box, double cell_mm)
+close_shape (Box *box, double cells_wide)
 {
   gsize cells = (gsize)box->width * box->height;
   g_autofree gint32 *before = g_memdup2 (box->label, cells * sizeof *before);
-  double size = CLOSE_MM / cell_mm;
+  double size = cells_wide;
   for (guint k = 0; k < CLOSINGS; k++)
     {
       memcpy (box->label, before, cells * sizeof *before);
@@ -173,7 +171,7 @@ fill_holes (Box *box)
 
 /* The shape as numbers with a rim of zeros, smoothed when it is large enough. */
 static float *
-soften (const Box *box, double cell_mm)
+soften (const Box *box, double cell_mm, const TfHintParams *p)
 {
   guint w = box->width + 2, h = box->height + 2;
   float *values = g_new0 (float, (gsize)w * h);
@@ -186,8 +184,8 @@ soften (const Box *box, double cell_mm)
           values[(gsize)(y + 1) * w + x + 1] = 1.0f;
           area += cell_mm * cell_mm;
         }
-  if (area >= SMALL_MM2)
-    tf_hint_blur (values, room, w, h, SMOOTH_MM / cell_mm);
+  if (area >= p->soften_mm2 && p->soften_mm > 0.0)
+    tf_hint_blur (values, room, w, h, p->soften_mm / cell_mm);
   for (guint k = 0; k < w; k++)
     values[k] = values[(gsize)(h - 1) * w + k] = 0.0f;
   for (guint k = 0; k < h; k++)
@@ -228,12 +226,12 @@ tf_hint_outline (const TfHintPieces *pieces, guint k, TfTime time, gboolean *edg
   Box box;
   TfOutline *outline = NULL;
   box_open (&box, pieces, k);
-  close_shape (&box, g->cell_mm);
+  close_shape (&box, pieces->params->close_mm / g->cell_mm);
   fill_holes (&box);
   grow (&box, pieces->params->grow_mm / g->cell_mm);
   fill_holes (&box);
   *edge = touches_edge (&box, g);
-  g_autofree float *values = soften (&box, g->cell_mm);
+  g_autofree float *values = soften (&box, g->cell_mm, pieces->params);
   g_autoptr (GArray) line = tf_hint_contour (values, box.width + 2, box.height + 2);
   if (line != NULL)
     outline = lift (line, &box, g, time, pieces->params->simplify_mm);

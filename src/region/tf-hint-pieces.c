@@ -11,14 +11,13 @@
 
 #include "tf-hint-private.h"
 
-/* Hills are told apart on the field smoothed once more; two are one when the saddle reaches this share of the lower top. */
-static const double HILL_MM = 8.0, SADDLE = 0.8;
 static const double CM2_IN_MM2 = 1e16;
 
 /* Hills of one sign while they are flooded. */
 typedef struct
 {
   const TfHintGrid *grid;
+  double saddle; /* two hills are one when it reaches this share of the lower top */
   int sign;
   float *height;    /* smoothed once more */
   gint32 *label;    /* hill of each cell, -1 */
@@ -76,7 +75,7 @@ flood_cell (Flood *flood, gsize at)
             continue;
           }
         float lower = MIN (g_array_index (flood->top, float, mine), g_array_index (flood->top, float, label));
-        if (flood->height[at] >= (float)SADDLE * lower)
+        if (flood->height[at] >= (float)flood->saddle * lower)
           mine = unite (flood, mine, label);
         else if (g_array_index (flood->top, float, label) > g_array_index (flood->top, float, mine))
           mine = label;
@@ -194,7 +193,7 @@ find_hills (TfHintPieces *pieces, int sign)
 {
   const TfHintGrid *g = pieces->grid;
   gsize cells = (gsize)g->n * g->n;
-  Flood flood = { .grid = g, .sign = sign };
+  Flood flood = { .grid = g, .saddle = pieces->params->saddle, .sign = sign };
   g_autofree float *height = g_new (float, cells), *room = g_new (float, cells);
   g_autofree gint32 *label = g_new (gint32, cells);
   g_autofree guint8 *keep = g_new0 (guint8, cells);
@@ -205,7 +204,7 @@ find_hills (TfHintPieces *pieces, int sign)
       float f = (float)sign * g->field[k];
       height[k] = f > 0.0f ? f : 0.0f;
     }
-  tf_hint_blur (height, room, g->n, g->n, HILL_MM / g->cell_mm);
+  tf_hint_blur (height, room, g->n, g->n, pieces->params->hill_mm / g->cell_mm);
   flood.height = height;
   flood.label = label;
   flood_all (&flood);

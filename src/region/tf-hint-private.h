@@ -20,6 +20,7 @@ typedef struct
   guint n;           /* cells a side */
   double cell_mm;
   double radius_mm;  /* of the Sun */
+  double edge_mu;    /* nothing farther out */
   double centre[3], west[3], north[3]; /* Carrington frame */
   float *field;      /* smoothed radial field, G; NaN: nothing there, or too near the limb */
   float *mu;
@@ -33,7 +34,6 @@ typedef struct
   double flux[2];      /* Mx */
   double place[2][3];  /* sum of flux * unit vector */
   int into;            /* index of the cluster it was joined to; itself while it stands alone */
-  gboolean nest;       /* a neighbour was kept apart by the nest rule */
 } TfHintCluster;
 
 typedef struct
@@ -75,7 +75,8 @@ void tf_hint_nearest (const gint32 *label, guint width, guint height, gint32 *ne
 
 /* tf-hint-join.c */
 void tf_hint_join (TfHintPieces *pieces);
-double tf_hint_length (double total_mx);
+/** tf_hint_length: longest plausible distance of the poles, Mm. */
+double tf_hint_length (double total_mx, const TfHintParams *params);
 /** tf_hint_separation: of the two poles, Mm; 0 for one-signed ones. */
 double tf_hint_separation (const TfHintCluster *cluster, double radius_mm);
 /** tf_hint_centre: unit vector of the flux's centre. */

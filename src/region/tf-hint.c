@@ -4,50 +4,10 @@
 #include "tf-hint.h"
 
 #include <math.h>
-#include <stddef.h>
 
 #include <glib/gi18n-lib.h>
 
 #include "tf-hint-private.h"
-
-static const double BIPOLE_WEAKER = 0.15, SMALL_WEAKER = 0.25;
-static const double SMALL_MX = 1e21, SMALL_LENGTH_MM = 45.0;
-static const double UNIPOLAR_MU = 0.45, MU_FULL = 0.5;
-static const double LONG = 0.9, ONE_SIDED = 0.5;
-
-#define AT(member) offsetof (TfHintParams, member)
-
-const TfOption tf_hint_options[] = {
-  { "cell", TF_OPTION_NUMBER, "Mm", 4.0, 1.0, 10.0, NULL, N_ ("cell of the equal-area working grid"), AT (cell_mm) },
-  { "smooth-field", TF_OPTION_NUMBER, "Mm", 4.0, 1.0, 20.0, NULL, N_ ("sigma of the Gaussian that smooths the field"),
-    AT (smooth_mm) },
-  { "low-sigma", TF_OPTION_NUMBER, "sigma", 3.5, 1.0, 20.0, NULL,
-    N_ ("low level of the smoothed radial field in units of its noise"), AT (low_sigma) },
-  { "low-gauss", TF_OPTION_NUMBER, "G", 12.0, 0.0, 500.0, NULL, N_ ("least low level, in (scaled) gauss"),
-    AT (low_gauss) },
-  { "high-sigma", TF_OPTION_NUMBER, "sigma", 8.0, 1.0, 50.0, NULL,
-    N_ ("level that a piece must reach somewhere, in units of the noise"), AT (high_sigma) },
-  { "patch-flux", TF_OPTION_NUMBER, "Mx", 4e19, 0.0, 1e22, NULL, N_ ("pieces with less flux are dropped"),
-    AT (patch_mx) },
-  { "reach", TF_OPTION_NUMBER, "Mm", 40.0, 1.0, 200.0, NULL, N_ ("widest gap across which pieces may be joined"),
-    AT (reach_mm) },
-  { "least-score", TF_OPTION_NUMBER, "", 0.14, 0.01, 1.0, NULL, N_ ("score below which no more pieces are joined"),
-    AT (score_min) },
-  { "bipole-flux", TF_OPTION_NUMBER, "Mx", 3e20, 0.0, 1e23, NULL,
-    N_ ("least unsigned flux of a bipole, times (0.5/mu)^2 below mu 0.5"), AT (bipole_mx) },
-  { "unipolar-flux", TF_OPTION_NUMBER, "Mx", 2e21, 0.0, 1e23, NULL,
-    N_ ("least flux of a unipolar hint, times (0.5/mu)^2 below mu 0.5"), AT (unipolar_mx) },
-  { "grow", TF_OPTION_NUMBER, "Mm", 6.0, 0.0, 50.0, NULL, N_ ("an outline is grown by this"), AT (grow_mm) },
-  { "simplify", TF_OPTION_NUMBER, "Mm", 3.0, 0.1, 30.0, NULL, N_ ("tolerance to which an outline is simplified"),
-    AT (simplify_mm) },
-  { NULL },
-};
-
-void
-tf_hint_params_init (TfHintParams *params)
-{
-  tf_options_reset (tf_hint_options, params);
-}
 
 void
 tf_hint_free (TfHint *hint)
@@ -75,37 +35,53 @@ static gboolean
 is_offered (const TfHintCluster *cluster, const TfHintParams *p, double radius_mm, double mu, gboolean *unipolar)
 {
   double total = tf_hint_total (cluster), weaker = tf_hint_weaker (cluster);
-  double limb = MAX (1.0, (MU_FULL / mu) * (MU_FULL / mu));
-  *unipolar = weaker < BIPOLE_WEAKER;
+  double limb = MAX (1.0, (p->full_mu / mu) * (p->full_mu / mu));
+  *unipolar = weaker < p->single_weaker;
   if (isnan (mu))
     return FALSE;
   if (*unipolar)
-    return total >= p->unipolar_mx * limb && mu >= UNIPOLAR_MU;
+    return total >= p->unipolar_mx * limb && mu >= p->unipolar_mu;
   if (total < p->bipole_mx * limb)
     return FALSE;
-  return total >= SMALL_MX || (weaker >= SMALL_WEAKER && tf_hint_separation (cluster, radius_mm) <= SMALL_LENGTH_MM);
+  return total >= p->small_mx || (weaker >= p->small_weaker && tf_hint_separation (cluster, radius_mm) <= p->small_mm);
 }
 
+/* By what was measured, as it is printed beside them. */
 static void
-add_cautions (TfHint *hint, const TfHintPieces *pieces, const TfHintCluster *cluster, gboolean edge,
-              const TfMeasureParams *measure)
+add_cautions (TfHint *hint, const TfHintPieces *pieces, gboolean edge, const TfMeasureParams *measure)
 {
-  double total = tf_hint_total (cluster), length = tf_hint_length (total);
-  double separation = tf_hint_separation (cluster, pieces->grid->radius_mm);
-  double sided = fabs (cluster->flux[0] - cluster->flux[1]) / total;
+  const TfHintParams *p = pieces->params;
+  const TfMeasure *m = &hint->measure;
+  double length = tf_hint_length (m->flux_unsigned_mx, p);
   hint->cautions = tf_notes_new ();
-  if (cluster->nest)
-    tf_notes_add (hint->cautions, "hint-neighbour-near", "");
-  if (separation > LONG * length)
-    tf_notes_add (hint->cautions, "hint-long", "dd", separation, length);
-  if (!hint->unipolar && sided > ONE_SIDED)
-    tf_notes_add (hint->cautions, "hint-one-sided", "d", 100.0 * sided);
-  if (edge)
+  if (m->separation_mm > p->long_share * length)
+    tf_notes_add (hint->cautions, "hint-long", "dd", m->separation_mm, length);
+  if (!hint->unipolar && fabs (m->imbalance) > p->one_sided)
+    tf_notes_add (hint->cautions, "hint-one-sided", "d", 100.0 * fabs (m->imbalance));
+  if (edge || tf_notes_find (m->cautions, "touches-missing-data") != NULL)
     tf_notes_add (hint->cautions, "hint-at-edge", "");
   if (pieces->grid->active)
-    tf_notes_add (hint->cautions, "hint-active-frame", "d", pieces->params->low_gauss);
-  if (!hint->unipolar && hint->measure.leader_flips)
+    tf_notes_add (hint->cautions, "hint-active-frame", "d", p->low_gauss);
+  if (!hint->unipolar && m->leader_flips)
     tf_notes_add (hint->cautions, "hint-leader-flips", "d", 100.0 * measure->floor_step);
+}
+
+/* Whoever stands close by was kept apart, by the rule for regions that stand for themselves or by its score. */
+static void
+tell_neighbours (const TfHintPieces *pieces, TfHint *const *hints)
+{
+  for (guint k = 0; k < pieces->pairs->len; k++)
+    {
+      const TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
+      if (!(pair->gap_mm < pieces->params->near_mm) || hints[pair->a] == NULL || hints[pair->b] == NULL)
+        continue;
+      for (guint side = 0; side < 2; side++)
+        {
+          TfHint *hint = hints[side == 0 ? pair->a : pair->b];
+          if (tf_notes_find (hint->cautions, "hint-neighbour-near") == NULL)
+            tf_notes_add (hint->cautions, "hint-neighbour-near", "d", pieces->params->near_mm);
+        }
+    }
 }
 
 static TfHint *
@@ -126,7 +102,7 @@ make_hint (const TfFrame *frame, const TfHintPieces *pieces, guint k, const TfMe
       tf_hint_free (hint);
       return NULL;
     }
-  add_cautions (hint, pieces, cluster, edge, measure);
+  add_cautions (hint, pieces, edge, measure);
   return hint;
 }
 
@@ -182,6 +158,8 @@ gather (Search *search, const TfWork *work, GError **error)
   g_autofree TfHint **found = g_new0 (TfHint *, MAX (n, 1));
   search->hints = found;
   gboolean done = tf_bands_run (work, n * TF_BAND_ROWS, try_cluster, search);
+  if (done)
+    tell_neighbours (search->pieces, found);
   for (guint k = 0; k < n; k++)
     if (found[k] != NULL)
       g_ptr_array_add (hints, found[k]);

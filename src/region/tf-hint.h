@@ -14,22 +14,64 @@
 
 G_BEGIN_DECLS
 
-#define TF_HINT_RULE "plain/1"
+#define TF_HINT_RULE "plain/2"
 
+/** TfHintParams: defaults, units, ranges and what each is for stand in tf_hint_options; no number of the rule is anywhere else. */
 typedef struct
 {
-  double cell_mm;       /* 4: working grid, Lambert equal area */
-  double smooth_mm;     /* 4 */
-  double low_sigma;     /* 3.5 */
-  double low_gauss;     /* 12 */
-  double high_sigma;    /* 8 */
-  double patch_mx;      /* 4e19 */
-  double reach_mm;      /* 40: gap of a candidate pair */
-  double score_min;     /* 0.14 */
-  double bipole_mx;     /* 3e20 */
-  double unipolar_mx;   /* 2e21 */
-  double grow_mm;       /* 6 */
-  double simplify_mm;   /* 3 */
+  /* the working grid and its levels */
+  double cell_mm;
+  double smooth_mm;
+  double edge_mu;
+  double low_sigma;
+  double low_gauss;
+  double high_sigma;
+  double active_share;
+  /* pieces of one sign */
+  double hill_mm;
+  double saddle;
+  double patch_mx;
+  /* joining */
+  double reach_mm;
+  double gap_mm;
+  double gap_same_mm;
+  double same_weight;
+  double balance;
+  double score_min;
+  double length_mm;
+  double length_mx;
+  double length_least_mm;
+  double length_most_mm;
+  double centres_share;
+  double nest_weaker;
+  double nest_mx;
+  double nest_small;
+  /* left-overs */
+  double single_weaker;
+  double tidy_mm;
+  double tidy_single;
+  double tidy_weaker;
+  double tidy_length;
+  double plage_mm;
+  double plage_centres_mm;
+  /* what is offered */
+  double bipole_mx;
+  double unipolar_mx;
+  double full_mu;
+  double unipolar_mu;
+  double small_mx;
+  double small_weaker;
+  double small_mm;
+  /* the outline */
+  double close_mm;
+  double grow_mm;
+  double soften_mm;
+  double soften_mm2;
+  double simplify_mm;
+  /* cautions */
+  double near_mm;
+  double long_share;
+  double one_sided;
 } TfHintParams;
 extern const TfOption tf_hint_options[];
 

@@ -79,56 +79,6 @@ test_region (gconstpointer data)
   tf_check_near ("distance from central meridian", m.cmd_deg, r->cmd, 8.0);
 }
 
-/* Every named region is one hint of its own, with the right leader; the quadrupole is one. */
-static void
-test_hints (void)
-{
-  const char *frames[] = { FRAME_2011, FRAME_2010, CUT_OUT };
-  for (guint f = 0; f < G_N_ELEMENTS (frames); f++)
-    {
-      TfHintParams params;
-      TfMeasureParams measure;
-      g_autoptr (GError) error = NULL;
-      g_autoptr (TfFrame) frame = open_real (frames[f]);
-      if (frame == NULL)
-        {
-          g_test_skip ("real data not there");
-          return;
-        }
-      tf_hint_params_init (&params);
-      tf_measure_params_init (&measure);
-      measure.outline_term = FALSE;
-      g_autoptr (GPtrArray) hints = tf_hints_find (frame, &params, &measure, NULL, &error);
-      g_assert_no_error (error);
-      g_test_message ("%s: %u hints", frames[f], hints->len);
-      tf_check_between ("hints on a frame", hints->len, f == 2 ? 1 : 3, f == 2 ? 1 : 14);
-      g_autoptr (GHashTable) taken = g_hash_table_new (NULL, NULL);
-      for (guint k = 0; k < G_N_ELEMENTS (regions); k++)
-        {
-          const TfHint *best = NULL;
-          double nearest = INFINITY;
-          if (g_strcmp0 (regions[k].frame, frames[f]) != 0)
-            continue;
-          for (guint j = 0; j < hints->len; j++)
-            {
-              const TfHint *hint = g_ptr_array_index (hints, j);
-              double d = tf_sphere_distance (hint->measure.cmd_deg, hint->measure.lat_deg,
-                                             regions[k].cmd, regions[k].lat);
-              if (d < nearest)
-                {
-                  nearest = d;
-                  best = hint;
-                }
-            }
-          tf_check_between (regions[k].name, nearest, 0.0, 9.0);
-          g_assert_nonnull (best);
-          g_assert_false (best->unipolar);
-          g_assert_cmpint (best->measure.leading_polarity, ==, regions[k].leader);
-          g_assert_true (g_hash_table_add (taken, (gpointer)best));
-        }
-    }
-}
-
 static void
 test_map_hints (void)
 {
@@ -161,6 +111,5 @@ add_real_tests (void)
           = g_strdup_printf ("/region/real/%s-has-its-leader-and-place", regions[k].name);
       g_test_add_data_func (path, &regions[k], test_region);
     }
-  g_test_add_func ("/region/hint/named-regions-are-hints-of-their-own", test_hints);
   g_test_add_func ("/region/hint/maps-are-refused-in-words", test_map_hints);
 }
