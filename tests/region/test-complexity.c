@@ -307,6 +307,55 @@ test_sign_and_turn (void)
     }
 }
 
+typedef struct
+{
+  const TfFrame *frame;
+  const TfOutline *outline;
+  double figure[2];
+} Share;
+
+static gpointer
+work_out (gpointer data)
+{
+  Share *share = data;
+  TfComplexityParams params;
+  TfMeasureParams measure;
+  g_auto (TfComplexity) c = { 0 };
+  tf_complexity_params_init (&params);
+  tf_measure_params_init (&measure);
+  measure.field_used = TF_FIELD_USED_POTENTIAL;
+  tf_complexity_region (&c, share->frame, share->outline, &measure, &params);
+  share->figure[0] = c.r_mx;
+  share->figure[1] = c.gradient_weighted_gauss;
+  return NULL;
+}
+
+/* FFTW's planner is shared by all threads. */
+static void
+test_threads (void)
+{
+  enum { THREADS = 6 };
+  BuilderFrame how;
+  BuilderPole poles[2];
+  GThread *threads[THREADS];
+  Share shares[THREADS];
+  builder_init (&how, 10.0, 5.0, 3.0);
+  builder_bipole (poles, 10.0, 5.0, 2.5, 5.0, 1e22, 1);
+  g_autoptr (TfFrame) frame = builder_frame (&how, poles, 2);
+  g_autoptr (TfOutline) outline = builder_cap (10.0, 5.0, 5.0);
+  for (guint k = 0; k < THREADS; k++)
+    {
+      shares[k] = (Share){ frame, outline, { 0.0 } };
+      threads[k] = g_thread_new ("complexity", work_out, &shares[k]);
+    }
+  for (guint k = 0; k < THREADS; k++)
+    g_thread_join (threads[k]);
+  tf_check_between ("R", shares[0].figure[0], 1e18, 1e23);
+  for (guint k = 1; k < THREADS; k++)
+    for (guint i = 0; i < 2; i++)
+      tf_check_near ("the same in every thread", shares[k].figure[i], shares[0].figure[i], 0.0);
+}
+
 static void
 test_a_map_is_refused (void)
 {
@@ -334,5 +383,6 @@ add_complexity_tests (void)
   g_test_add_func ("/region/complexity/the-caution-stands-with-the-figures", test_the_caution_stands_with_the_figures);
   g_test_add_func ("/region/complexity/two-near-strong-cores-are-a-delta-candidate", test_delta);
   g_test_add_func ("/region/complexity/signs-and-turns-change-nothing", test_sign_and_turn);
+  g_test_add_func ("/region/complexity/threads-agree-bit-for-bit", test_threads);
   g_test_add_func ("/region/complexity/a-map-is-refused", test_a_map_is_refused);
 }
