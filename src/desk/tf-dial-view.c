@@ -69,8 +69,7 @@ tf_dial_view_init (TfDialView *self)
   self->dial.bearing_deg = self->dial.joy_deg = NAN;
 }
 
-/* -- the diamond beside the verdict
- * ------------------------------------------------------------------- */
+/* -- the diamond beside the verdict ---------------------------------------------------------- */
 
 struct _TfVerdictSign
 {

@@ -19,8 +19,7 @@ enum
   CROSS = 9
 };
 
-/* -- the picture
- * ---------------------------------------------------------------------------------- */
+/* -- the picture ----------------------------------------------------------------------------- */
 
 void
 tf_plate_draw_picture (TfPlate *self, int width, int height)
@@ -52,8 +51,7 @@ tf_plate_draw_picture (TfPlate *self, int width, int height)
   self->picture_stale = FALSE;
 }
 
-/* -- the overlay
- * ------------------------------------------------------------------------------------- */
+/* -- the overlay ----------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -261,8 +259,7 @@ tf_plate_place_overlay (TfPlate *self, double *dx, double *dy, double *stretch)
   *dy = round (y1 - *stretch * (y0 + TF_PLATE_MARGIN));
 }
 
-/* -- the line in hand
- * ---------------------------------------------------------------------------------- */
+/* -- the line in hand ------------------------------------------------------------------------ */
 
 /* Where the arrow keys have put the pointer. */
 static void

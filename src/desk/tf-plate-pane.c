@@ -22,10 +22,15 @@ struct _TfPlatePane
   GtkLabel *range_words;
   TfSession *session;
   gboolean setting;
+  guint delay; /* until the progress is shown */
 };
 
 G_DEFINE_FINAL_TYPE (TfPlatePane, tf_plate_pane, GTK_TYPE_WIDGET)
 
+enum
+{
+  QUIET_MS = 400
+};
 static const double large_text = 19; /* px */
 
 static void
@@ -58,18 +63,33 @@ readout_changed (TfPlatePane *self)
   gtk_label_set_label (self->readout, tf_plate_get_readout (self->plate));
 }
 
+static gboolean
+show_progress (gpointer data)
+{
+  TfPlatePane *self = data;
+  self->delay = 0;
+  gtk_widget_set_visible (self->over_progress, TRUE);
+  return G_SOURCE_REMOVE;
+}
+
+/* Work shorter than half a second says nothing. */
 static void
 status_changed (TfPlatePane *self)
 {
   double share;
   const char *words = tf_session_get_progress (self->session, &share);
-  gtk_widget_set_visible (self->over_progress, words != NULL);
   if (words == NULL)
-    return;
+    {
+      g_clear_handle_id (&self->delay, g_source_remove);
+      gtk_widget_set_visible (self->over_progress, FALSE);
+      return;
+    }
   gtk_label_set_label (self->progress_words, words);
   if (share >= 0)
     gtk_progress_bar_set_fraction (self->progress, share);
   gtk_widget_set_visible (GTK_WIDGET (self->progress), share >= 0);
+  if (!gtk_widget_get_visible (self->over_progress) && self->delay == 0)
+    self->delay = g_timeout_add (QUIET_MS, show_progress, self);
 }
 
 static void
@@ -134,6 +154,7 @@ dispose (GObject *object)
 {
   TfPlatePane *self = TF_PLATE_PANE (object);
   GtkWidget *child = gtk_widget_get_first_child (GTK_WIDGET (self));
+  g_clear_handle_id (&self->delay, g_source_remove);
   g_clear_object (&self->session);
   g_clear_pointer (&child, gtk_widget_unparent);
   G_OBJECT_CLASS (tf_plate_pane_parent_class)->dispose (object);

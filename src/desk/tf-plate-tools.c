@@ -55,8 +55,7 @@ draw_to (TfPlate *self, double x, double y)
   measure_soon (self);
 }
 
-/* -- drag and click
- * -------------------------------------------------------------------------------- */
+/* -- drag and click -------------------------------------------------------------------------- */
 
 static gboolean
 is_drawing (TfPlate *self)
@@ -142,8 +141,7 @@ drag_end (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
     click (self, x + dx, y + dy);
 }
 
-/* -- wheel, motion, keys
- * ------------------------------------------------------------------------------ */
+/* -- wheel, motion, keys --------------------------------------------------------------------- */
 
 static gboolean
 scrolled (GtkEventControllerScroll *scroll, double dx, double dy, TfPlate *self)

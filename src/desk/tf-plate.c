@@ -18,8 +18,7 @@ enum
 };
 static const GdkRGBA ground = { 0.0902f, 0.098f, 0.1137f, 1 };
 
-/* -- words
- * ---------------------------------------------------------------------------------------------- */
+/* -- words ----------------------------------------------------------------------------------- */
 
 static void
 append_field (GString *text, double gauss)
@@ -109,8 +108,7 @@ char *
 tf_plate_dup_description (TfPlate *self)
 {
   TfFrame *frame = self->session != NULL ? tf_session_get_frame (self->session) : NULL;
-  const char *problem
-      = self->session != NULL ? tf_session_get_frame_problem (self->session) : NULL;
+  const char *problem = self->session != NULL ? tf_session_get_frame_problem (self->session) : NULL;
   if (frame == NULL)
     return problem != NULL ? g_strdup_printf (_ ("not shown: %s"), problem)
                            : g_strdup (_ ("no frame is open"));
@@ -125,8 +123,7 @@ tf_plate_dup_description (TfPlate *self)
   return g_string_free (text, FALSE);
 }
 
-/* -- following the session
- * ---------------------------------------------------------------------------------- */
+/* -- following the session ------------------------------------------------------------------- */
 
 static void
 describe (TfPlate *self)
@@ -185,9 +182,7 @@ tf_plate_set_session (TfPlate *self, TfSession *session)
   describe (self);
 }
 
-/* -- the widget
- * ------------------------------------------------------------------------------------------------
- */
+/* -- the widget ------------------------------------------------------------------------------ */
 
 static void
 snapshot (GtkWidget *widget, GtkSnapshot *snapshot)

@@ -22,7 +22,7 @@ struct _TfRoll
 
 G_DEFINE_FINAL_TYPE (TfRoll, tf_roll, GTK_TYPE_WIDGET)
 
-/* -- rows -------------------------------------------------------------------------------------- */
+/* -- rows ------------------------------------------------------------------------------------ */
 
 static void
 setup_row (GtkSignalListItemFactory *factory, GtkListItem *item, TfRoll *self)
@@ -44,8 +44,7 @@ unbind_row (GtkSignalListItemFactory *factory, GtkListItem *item, TfRoll *self)
   tf_roll_row_set_item (TF_ROLL_ROW (gtk_list_item_get_child (item)), NULL);
 }
 
-/* -- selection, both ways
- * ------------------------------------------------------------------------ */
+/* -- selection, both ways -------------------------------------------------------------------- */
 
 static void
 selected (TfRoll *self)

@@ -42,8 +42,7 @@ chosen_row (TfSession *self)
   return self->region != NULL ? tf_region_item_get_row (self->region) : NULL;
 }
 
-/* -- keep, drop, withdraw
- * ------------------------------------------------------------------------ */
+/* -- keep, drop, withdraw -------------------------------------------------------------------- */
 
 gboolean
 tf_session_can_keep (TfSession *self)
@@ -144,8 +143,7 @@ tf_session_withdraw (TfSession *self)
   return push (self, deed);
 }
 
-/* -- note and class
- * ------------------------------------------------------------------------------ */
+/* -- note and class -------------------------------------------------------------------------- */
 
 gboolean
 tf_session_set_note (TfSession *self, const char *text)
@@ -197,8 +195,7 @@ tf_session_set_class (TfSession *self, const char *key)
   return push (self, deed);
 }
 
-/* -- undo and redo
- * -------------------------------------------------------------------------------- */
+/* -- undo and redo --------------------------------------------------------------------------- */
 
 gboolean
 tf_session_can_undo (TfSession *self)
@@ -232,8 +229,7 @@ tf_session_redo (TfSession *self)
   return tf_session_can_redo (self) && push (self, deed_new (self, TF_DEED_REDO));
 }
 
-/* -- what came of it
- * ------------------------------------------------------------------------------- */
+/* -- what came of it ------------------------------------------------------------------------- */
 
 static void
 say_undone (TfSession *self, const TfDeed *deed)

@@ -1,10 +1,9 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* Drawing: the line in hand, the draft that it becomes, and the measure of either. While the
- * line is drawn it is measured at once, without the outline term; at rest a worker measures
- * again with it, and a measure of an older draft is dropped. The draft is kept in the ledger as
- * a draft, so that it outlives the window; it is a mark only when it was kept. */
+/* Drawing: the line in hand and the draft that it becomes. The draft is kept in the ledger as a
+ * draft, so that it outlives the window; it is a mark only when it was kept. Both are measured by
+ * tf-session-measure.c. */
 
 #include "tf-session-private.h"
 
@@ -15,9 +14,8 @@ enum
 {
   MIN_VERTICES = 3
 };
-static const double step_min_deg = 0.05;     /* nearer vertices of a freehand line are left out */
-static const double simplify_deg = 0.06;     /* of a finished freehand line */
-static const gint64 slow_measure_us = 30000; /* a line slower than this is measured at rest only */
+static const double step_min_deg = 0.05; /* nearer vertices of a freehand line are left out */
+static const double simplify_deg = 0.06; /* of a finished freehand line */
 
 TfTool
 tf_session_get_tool (TfSession *self)
@@ -60,14 +58,6 @@ tf_session_set_replaces (TfSession *self, gboolean replaces)
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
-static void
-forget_measure (TfSession *self)
-{
-  self->draft_serial++;
-  self->measured = self->at_rest = FALSE;
-  g_clear_pointer (&self->measure_problem, g_free);
-}
-
 void
 tf_session_drop_draft (TfSession *self)
 {
@@ -77,7 +67,7 @@ tf_session_drop_draft (TfSession *self)
   g_clear_object (&self->replaced);
   self->keeping = self->draft_looked = self->slow = FALSE;
   g_clear_pointer (&self->draft_text, g_free);
-  forget_measure (self);
+  tf_session_forget_measure (self);
 }
 
 void
@@ -114,6 +104,7 @@ tf_session_set_tool (TfSession *self, TfTool tool)
 {
   g_return_if_fail (TF_IS_SESSION (self));
   self->tool = self->frame != NULL ? tool : TF_TOOL_NONE;
+  self->slow = FALSE;
   g_array_set_size (self->line, 0);
   if (self->tool != TF_TOOL_NONE)
     g_clear_pointer (&self->saved, g_free);
@@ -121,8 +112,7 @@ tf_session_set_tool (TfSession *self, TfTool tool)
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
-/* -- the line in hand
- * --------------------------------------------------------------------------- */
+/* -- the line in hand ------------------------------------------------------------------------ */
 
 void
 tf_session_draw_to (TfSession *self, double lon_deg, double lat_deg)
@@ -153,139 +143,7 @@ tf_session_take_back_corner (TfSession *self)
   return TRUE;
 }
 
-/* -- measuring
- * ------------------------------------------------------------------------------------ */
-
-static void
-measure_now (TfSession *self, const TfOutline *outline)
-{
-  TfMeasureParams params = self->params;
-  params.outline_term = FALSE;
-  g_autoptr (GError) error = NULL;
-  g_autoptr (TfMask) mask = tf_mask_new (self->frame, outline, params.mu_min, (guint)params.law);
-  TfMeasure measure = { 0 };
-  forget_measure (self);
-  self->measured = tf_measure_masked (&measure, self->frame, mask, NULL, &params, &error);
-  if (self->measured)
-    {
-      tf_measure_clear (&self->measure);
-      self->measure = measure;
-    }
-  else
-    {
-      tf_measure_clear (&measure);
-      self->measure_problem = g_strdup (error != NULL ? error->message : "");
-    }
-  tf_session_judge_choice (self);
-}
-
-void
-tf_session_measure_line (TfSession *self)
-{
-  g_return_if_fail (TF_IS_SESSION (self));
-  if (self->frame == NULL || (self->line->len == 0 && self->draft != NULL))
-    return; /* the line was finished meanwhile */
-  TfTime time = tf_frame_get_info (self->frame)->time;
-  g_autoptr (GError) error = NULL;
-  g_autoptr (TfOutline) outline = NULL;
-  if (self->line->len >= MIN_VERTICES)
-    outline = tf_outline_new (time, (const TfVertex *)(gconstpointer)self->line->data,
-                              self->line->len, &error);
-  gint64 start = g_get_monotonic_time ();
-  if (outline != NULL && !self->slow)
-    measure_now (self, outline);
-  else if (outline == NULL)
-    {
-      forget_measure (self);
-      self->measure_problem
-          = g_strdup (error != NULL ? error->message : _ ("Go on round the region."));
-    }
-  self->slow = self->slow || g_get_monotonic_time () - start > slow_measure_us;
-  tf_session_emit (self, TF_SIGNAL_CHOICE);
-}
-
-typedef struct
-{
-  TfFrame *frame;
-  TfOutline *outline;
-  TfMeasureParams params;
-  guint64 serial;
-} Rest;
-
-static void
-rest_free (gpointer data)
-{
-  Rest *rest = data;
-  tf_frame_unref (rest->frame);
-  tf_outline_unref (rest->outline);
-  g_free (rest);
-}
-
-static void
-measure_free (gpointer data)
-{
-  tf_measure_clear (data);
-  g_free (data);
-}
-
-static void
-measure_in_thread (GTask *task, gpointer source, gpointer data, GCancellable *cancellable)
-{
-  const Rest *rest = data;
-  GError *error = NULL;
-  TfMeasure *measure = g_new0 (TfMeasure, 1);
-  if (tf_measure_region (measure, rest->frame, rest->outline, &rest->params, &error))
-    {
-      g_task_return_pointer (task, measure, measure_free);
-      return;
-    }
-  measure_free (measure);
-  g_task_return_error (task, error);
-}
-
-static void
-measured_at_rest (GObject *source, GAsyncResult *result, gpointer data)
-{
-  g_autoptr (TfSession) self = data; /* not the task's source: the worker may let go of that last */
-  const Rest *rest = g_task_get_task_data (G_TASK (result));
-  guint64 serial = rest->serial;
-  g_autoptr (GError) error = NULL;
-  TfMeasure *measure = g_task_propagate_pointer (G_TASK (result), &error);
-  if (serial != self->draft_serial)
-    {
-      g_clear_pointer (&measure, measure_free);
-      return;
-    }
-  self->at_rest = self->measured = measure != NULL;
-  g_clear_pointer (&self->measure_problem, g_free);
-  if (measure != NULL)
-    {
-      tf_measure_clear (&self->measure);
-      self->measure = *measure;
-      g_free (measure);
-    }
-  else
-    self->measure_problem = g_strdup (error->message);
-  tf_session_judge_choice (self);
-  tf_session_emit (self, TF_SIGNAL_CHOICE);
-}
-
-static void
-measure_at_rest (TfSession *self)
-{
-  Rest *rest = g_new0 (Rest, 1);
-  rest->frame = tf_frame_ref (self->frame);
-  rest->outline = tf_outline_ref (self->draft);
-  rest->params = self->params;
-  rest->params.outline_term = TRUE;
-  rest->serial = self->draft_serial;
-  g_autoptr (GTask) task = g_task_new (NULL, NULL, measured_at_rest, g_object_ref (self));
-  g_task_set_task_data (task, rest, rest_free);
-  g_task_run_in_thread (task, measure_in_thread);
-}
-
-/* -- the draft
- * ------------------------------------------------------------------------------------- */
+/* -- the draft ------------------------------------------------------------------------------- */
 
 static gboolean
 holds_region (const TfOutline *outline, TfRegionItem *item)
@@ -328,8 +186,7 @@ take_draft (TfSession *self, TfOutline *outline)
   self->draft_looked = TRUE;
   g_array_set_size (self->line, 0);
   find_replaced (self);
-  measure_now (self, outline);
-  measure_at_rest (self);
+  tf_session_measure_draft (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
@@ -350,7 +207,7 @@ tf_session_finish_line (TfSession *self)
   if (self->frame == NULL || self->line->len < MIN_VERTICES)
     {
       g_array_set_size (self->line, 0);
-      forget_measure (self);
+      tf_session_forget_measure (self);
       tf_session_judge_choice (self);
       tf_session_emit (self, TF_SIGNAL_CHOICE);
       return FALSE;
@@ -361,7 +218,6 @@ tf_session_finish_line (TfSession *self)
       time, (const TfVertex *)(gconstpointer)self->line->data, self->line->len, &error);
   gboolean freehand = self->tool == TF_TOOL_OUTLINE;
   g_array_set_size (self->line, 0);
-  self->slow = FALSE;
   if (outline == NULL)
     {
       tf_session_say (self, error->message);

@@ -9,7 +9,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-/* -- frames only to look at, without a ledger -------------------------------------------------- */
+/* -- frames only to look at, without a ledger ------------------------------------------------ */
 
 static TfFrameRow *
 look_row (const char *path)
@@ -103,7 +103,7 @@ look_at (TfSession *self, char *const *paths)
   g_task_run_in_thread (task, look_in_thread);
 }
 
-/* -- frames into the ledger -------------------------------------------------------------------- */
+/* -- frames into the ledger ------------------------------------------------------------------ */
 
 /* What could not be read stays to be read: one sentence a file. Those refused stand in the roll. */
 static void

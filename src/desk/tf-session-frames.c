@@ -159,7 +159,7 @@ tf_session_clear_frames (TfSession *self)
   tf_session_emit (self, TF_SIGNAL_FRAME);
 }
 
-/* -- the frame on the plate ------------------------------------------------------------------- */
+/* -- the frame on the plate ------------------------------------------------------------------ */
 
 TfFrameItem *
 tf_session_get_frame_item (TfSession *self)
@@ -261,7 +261,7 @@ tf_session_step_frame (TfSession *self, int step)
     }
 }
 
-/* -- the newest -------------------------------------------------------------------------------- */
+/* -- the newest ------------------------------------------------------------------------------ */
 
 static int
 by_value (gconstpointer a, gconstpointer b)

@@ -88,7 +88,8 @@ struct _TfSession
   gint64 judging;        /* the hint or mark whose deed is on its way: not judged twice */
   gboolean draft_looked; /* the ledger was asked for a draft on this frame */
   char *draft_text;      /* came before the pixels */
-  gboolean slow;         /* the line in hand is too large to be measured while it is drawn */
+  gboolean slow;         /* the line in hand takes too long for the main thread */
+  gboolean live_busy;    /* a worker measures the line in hand */
   TfMeasure measure;     /* of the line or the draft, when measured */
   gboolean measured;
   char *measure_problem;
@@ -117,6 +118,10 @@ tf_session_replace_points (TfSession *session, GArray *points, GArray *dots, GAr
 void tf_session_store_draft (TfSession *session);
 void tf_session_judge_choice (TfSession *session);
 void tf_session_drop_draft (TfSession *session);
+/** tf_session_forget_measure: what a worker still has in hand will be dropped. */
+void tf_session_forget_measure (TfSession *session);
+/** tf_session_measure_draft: at once, and by a worker with the outline term. */
+void tf_session_measure_draft (TfSession *session);
 void tf_session_update_pick (TfSession *session);
 /** tf_session_restore_draft: from the ledger's text */
 void tf_session_restore_draft (TfSession *session, const char *text);

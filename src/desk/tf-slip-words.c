@@ -11,8 +11,7 @@
 #include "tf-joy.h"
 #include "tf-number.h"
 
-/* -- small words
- * --------------------------------------------------------------------------------- */
+/* -- small words ----------------------------------------------------------------------------- */
 
 char *
 tf_words_dup_number (double value, guint decimals)
@@ -143,8 +142,7 @@ dup_flux_bare (double mx)
   return text;
 }
 
-/* -- values
- * ------------------------------------------------------------------------------------------ */
+/* -- values ---------------------------------------------------------------------------------- */
 
 static char *
 value_tilt (const TfMeasure *m)
@@ -215,8 +213,7 @@ tf_line_dup_value (TfLine line, const TfReading *r)
     }
 }
 
-/* -- what stands under them
- * ------------------------------------------------------------------------------ */
+/* -- what stands under them ------------------------------------------------------------------ */
 
 static void
 append_witnesses (GString *text, const TfMeasure *m)
@@ -315,8 +312,7 @@ tf_line_dup_under (TfLine line, const TfReading *r)
     }
 }
 
-/* -- how they were got
- * ---------------------------------------------------------------------------------------- */
+/* -- how they were got ----------------------------------------------------------------------- */
 
 static const char *const how_texts[TF_N_LINES] = {
   [TF_LINE_TILT] = N_ ("Angle of the axis from the following to the leading pole against the "

@@ -43,8 +43,7 @@ set_label (GtkLabel *label, const char *text)
     gtk_label_set_label (label, text != NULL ? text : "");
 }
 
-/* -- the head
- * ---------------------------------------------------------------------------------------- */
+/* -- the head -------------------------------------------------------------------------------- */
 
 static void
 show_replaces (TfSlip *self)
@@ -119,8 +118,7 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
   show_replaces (self);
 }
 
-/* -- dial, verdict, numbers
- * ----------------------------------------------------------------------------- */
+/* -- dial, verdict, numbers ------------------------------------------------------------------ */
 
 static void
 show_dial (TfSlip *self, const TfMeasure *m, const TfVerdict *verdict)
@@ -188,8 +186,7 @@ show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
   show_cautions (self, m);
 }
 
-/* -- class and note
- * ---------------------------------------------------------------------------------------- */
+/* -- class and note -------------------------------------------------------------------------- */
 
 static void
 show_class (TfSlip *self, const char *text)
@@ -247,9 +244,7 @@ show_judged (TfSlip *self, TfRegionItem *region, gboolean drawing)
   self->setting = FALSE;
 }
 
-/* -- all of it
- * ------------------------------------------------------------------------------------------------
- */
+/* -- all of it ------------------------------------------------------------------------------- */
 
 static void
 choice_changed (TfSlip *self)

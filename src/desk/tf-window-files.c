@@ -45,8 +45,7 @@ dup_chosen (GtkFileChooserNative *chooser)
   return (char **)g_ptr_array_free (paths, FALSE);
 }
 
-/* -- ledgers
- * ---------------------------------------------------------------------------------------- */
+/* -- ledgers --------------------------------------------------------------------------------- */
 
 static const char *const ledger_endings[] = { "*.ledger", NULL };
 
@@ -159,9 +158,7 @@ tf_window_open_demo (TfWindow *self)
                             "it and opens it here."));
 }
 
-/* -- frames
- * ------------------------------------------------------------------------------------------------
- */
+/* -- frames ---------------------------------------------------------------------------------- */
 
 void
 tf_window_choose_frames (TfWindow *self)
@@ -205,8 +202,7 @@ tf_window_add_drop (TfWindow *self)
   gtk_widget_add_controller (GTK_WIDGET (self), GTK_EVENT_CONTROLLER (target));
 }
 
-/* -- the person
- * --------------------------------------------------------------------------------------------- */
+/* -- the person ------------------------------------------------------------------------------ */
 
 static void
 name_changed (GtkEditable *entry, AdwMessageDialog *dialog)
@@ -247,9 +243,7 @@ tf_window_ask_person (TfWindow *self, const char *then)
   gtk_widget_grab_focus (entry);
 }
 
-/* -- about
- * ----------------------------------------------------------------------------------------------------
- */
+/* -- about ----------------------------------------------------------------------------------- */
 
 static const char *
 cautions_text (void)

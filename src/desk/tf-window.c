@@ -67,8 +67,7 @@ tf_window_say (TfWindow *self, const char *text)
   adw_toast_overlay_add_toast (self->toasts, toast);
 }
 
-/* -- the age of the newest frame
- * --------------------------------------------------------------------- */
+/* -- the age of the newest frame ------------------------------------------------------------- */
 
 static double
 age_of (TfTime newest)
@@ -111,8 +110,7 @@ age_tick (gpointer data)
   return G_SOURCE_CONTINUE;
 }
 
-/* -- following the session
- * ------------------------------------------------------------------------------ */
+/* -- following the session ------------------------------------------------------------------- */
 
 static void
 show_page (TfWindow *self)
@@ -249,9 +247,7 @@ set_widths (TfWindow *self)
   gtk_widget_set_size_request (GTK_WIDGET (self->slip), slip, -1);
 }
 
-/* -- opening
- * ------------------------------------------------------------------------------------------------
- */
+/* -- opening --------------------------------------------------------------------------------- */
 
 gboolean
 tf_window_is_ledger (const char *path)
@@ -287,9 +283,7 @@ tf_window_open (TfWindow *self, char *const *paths)
     tf_session_add_frames (self->session, (char *const *)frames->pdata);
 }
 
-/* -- closing
- * --------------------------------------------------------------------------------------------------
- */
+/* -- closing --------------------------------------------------------------------------------- */
 
 static void
 close_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *self)

@@ -53,8 +53,7 @@ redraw (TfWingsView *self)
   gtk_widget_queue_draw (GTK_WIDGET (self));
 }
 
-/* -- following the session
- * -------------------------------------------------------------------------------- */
+/* -- following the session ------------------------------------------------------------------- */
 
 static double
 frame_year (TfWingsView *self)
@@ -116,8 +115,7 @@ tf_wings_view_set_session (TfWingsView *self, TfSession *session)
   points_changed (self);
 }
 
-/* -- zoom, pick, choose
- * -------------------------------------------------------------------------------------- */
+/* -- zoom, pick, choose ---------------------------------------------------------------------- */
 
 static void
 set_span (TfWingsView *self, double from, double to)
@@ -247,8 +245,7 @@ key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifi
     }
 }
 
-/* -- the widget
- * ---------------------------------------------------------------------------------------------- */
+/* -- the widget ------------------------------------------------------------------------------ */
 
 static void
 draw (TfWingsView *self, int width, int height, int scale)

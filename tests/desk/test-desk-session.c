@@ -8,8 +8,7 @@
 
 #include "tf-writer.h"
 
-/* -- the writer
- * ---------------------------------------------------------------------------------- */
+/* -- the writer ------------------------------------------------------------------------------ */
 
 typedef struct
 {
@@ -120,8 +119,7 @@ nothing_to_undo (void)
       tf_writer_get_problem (writer)); /* trying again would not help: not in the way of the next */
 }
 
-/* -- the session
- * ------------------------------------------------------------------------------------ */
+/* -- the session ----------------------------------------------------------------------------- */
 
 static guint
 count (TfSession *session, gboolean hints)

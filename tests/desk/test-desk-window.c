@@ -97,8 +97,7 @@ actions_follow (void)
   gtk_window_destroy (GTK_WINDOW (window));
 }
 
-/* -- what a screen reader meets
- * ----------------------------------------------------------------------- */
+/* -- what a screen reader meets -------------------------------------------------------------- */
 
 static gboolean
 has_words (GtkWidget *widget)
@@ -154,8 +153,7 @@ names (void)
   gtk_window_destroy (GTK_WINDOW (window));
 }
 
-/* -- the slip
- * ---------------------------------------------------------------------------------------------- */
+/* -- the slip -------------------------------------------------------------------------------- */
 
 static void
 count_rows (GtkWidget *widget, guint *n)
