@@ -62,7 +62,7 @@ def run_test(test, sanitize):
     if sanitize:
         env.update(ASAN_OPTIONS="detect_leaks=1:abort_on_error=0", UBSAN_OPTIONS="halt_on_error=1:print_stacktrace=1",
                    TF_SANITIZED="1")
-    command = test["cmd"]
+    command = test["cmd"] + (["-k"] if "--tap" in test["cmd"] and "-k" not in test["cmd"] else [])  # go on after a failure
     try:
         done = subprocess.run(command, cwd=test["workdir"] or None, env=env, stdout=subprocess.PIPE, stderr=subprocess.STDOUT,
                               text=True, errors="replace", timeout=max(test["timeout"], 60) * (4 if sanitize else 2))
