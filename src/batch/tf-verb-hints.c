@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
+#include <malloc.h>
 #include <stdio.h>
 #include <glib/gi18n-lib.h>
 
@@ -105,6 +106,7 @@ tf_verb_hints (int argc, char **argv)
   if (argc < 2)
     return tf_batch_usage ("hints", _ ("Name at least one frame."));
 
+  mallopt (M_ARENA_MAX, 1); /* what one region's thread gives back serves the next, on any thread */
   g_autoptr (TfWork) work = tf_batch_work_new (0);
   g_autoptr (TfStudy) study = tf_study_new_default ();
   g_autofree char *method = tf_options_dup_canonical (tf_measure_options, &words.measure, TF_MEASURE_METHOD);

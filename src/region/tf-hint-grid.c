@@ -12,7 +12,7 @@
 
 enum
 {
-  STRIPES = 8, /* of rows, each with its own sums, added in order: the same for any number of threads */
+  STRIPES = 4, /* of rows, each with its own sums, added in order: the same for any number of threads */
   RINGS = 8,
   RING_CELLS = 50, /* fewer than this do not make a ring of their own */
   CLIPS = 6,

@@ -17,9 +17,8 @@ enum
 struct _TfMask
 {
   TfMaskBox box;
-  TfMaskPixel *pixels; /* row by row; room for the whole box */
+  TfMaskPixel *pixels; /* row by row */
   guint n;
-  gint32 *grid;
   guint missing;
   double cut;
 };
@@ -68,13 +67,27 @@ find_cut (const TfGeometry *geometry, const TfFill *fill, const TfMaskBox *box, 
   return cut.all > 0.0 ? 1.0 - cut.seen / cut.all : 0.0;
 }
 
-static gboolean
-any_above (const float *field, guint n, float least)
+static guint
+count_above (const float *field, guint n, float least)
 {
   guint above = 0;
   for (guint k = 0; k < n; k++)
     above += fabsf (field[k]) >= least;
-  return above > 0;
+  return above;
+}
+
+/* How many pixels there can be at most. */
+static gsize
+count_most (const TfMask *mask, const TfFrame *frame, float least)
+{
+  const TfMaskBox *box = &mask->box;
+  gsize n = (gsize)box->width * box->height;
+  if (!(least > 0.0f))
+    return n;
+  n = 0;
+  for (guint y = box->y0; y < box->y0 + box->height; y++)
+    n += count_above (tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0, box->width, least);
+  return n;
 }
 
 /* @least > 0: weaker pixels, and those without a value, are passed over. */
@@ -87,8 +100,7 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
   gboolean map = tf_geometry_is_map (g);
   const float *field
       = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
-  gint32 *grid = mask->grid + (gsize)(y - box->y0) * box->width;
-  if (least > 0.0f && !any_above (field, box->width, least))
+  if (least > 0.0f && count_above (field, box->width, least) == 0)
     return;
   tf_geometry_row_sun (g, y + 1.0, box->x0 + 1.0, box->width, row->unit, row->mu, row->area);
   tf_fill_row (fill, (const Unit *)row->unit, box->width, row->inside);
@@ -102,7 +114,6 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
           mask->missing++;
           continue;
         }
-      grid[k] = (gint32)mask->n;
       TfMaskPixel *pixel = &mask->pixels[mask->n++];
       pixel->x = box->x0 + k;
       pixel->y = y;
@@ -156,13 +167,11 @@ tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min
   g_autoptr (TfOutline) here = tf_mask_outline (frame, outline, law);
   g_autoptr (TfFill) fill = tf_fill_new (here);
   mask->box = tf_mask_box (g, here, fill, mu_min);
-  gsize n = (gsize)mask->box.width * mask->box.height;
-  mask->pixels = g_new (TfMaskPixel, MAX (n, 1));
-  mask->grid = g_new (gint32, MAX (n, 1));
-  memset (mask->grid, 0xff, n * sizeof *mask->grid);
+  mask->pixels = g_new (TfMaskPixel, MAX (count_most (mask, frame, least_gauss), 1));
   mask->cut = find_cut (g, fill, &mask->box, mu_min);
-  if (n > 0)
+  if (mask->box.width > 0)
     fill_rows (mask, frame, fill, mu_min, least_gauss);
+  mask->pixels = g_renew (TfMaskPixel, mask->pixels, MAX (mask->n, 1));
   return mask;
 }
 
@@ -177,7 +186,6 @@ clear (gpointer data)
 {
   TfMask *mask = data;
   g_free (mask->pixels);
-  g_free (mask->grid);
 }
 
 void
@@ -212,12 +220,11 @@ tf_mask_get_cut (const TfMask *mask)
   return mask->cut;
 }
 
-const gint32 *
-tf_mask_get_grid (const TfMask *mask, guint *x0, guint *y0, guint *width, guint *height)
+void
+tf_mask_get_box (const TfMask *mask, guint *x0, guint *y0, guint *width, guint *height)
 {
   *x0 = mask->box.x0;
   *y0 = mask->box.y0;
   *width = mask->box.width;
   *height = mask->box.height;
-  return mask->grid;
 }

@@ -49,7 +49,7 @@ static void
 fill_cells (Field *field, const TfRegionSamples *samples)
 {
   guint x0, y0, width, height, n = cell_pixels (samples);
-  tf_mask_get_grid (samples->mask, &x0, &y0, &width, &height);
+  tf_mask_get_box (samples->mask, &x0, &y0, &width, &height);
   field->width = (width + n - 1) / n;
   field->height = (height + n - 1) / n;
   field->cells = g_new0 (Cell, (gsize)field->width * field->height);

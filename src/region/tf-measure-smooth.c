@@ -26,7 +26,7 @@ static void
 open_patch (Patch *patch, const TfRegionSamples *samples, guint reach, float scale)
 {
   guint x0, y0, w, h, frame_w = tf_frame_get_width (samples->frame);
-  tf_mask_get_grid (samples->mask, &x0, &y0, &w, &h);
+  tf_mask_get_box (samples->mask, &x0, &y0, &w, &h);
   patch->x0 = x0 > reach ? x0 - reach : 0;
   patch->y0 = y0 > reach ? y0 - reach : 0;
   patch->width = MIN (x0 + w + reach, frame_w) - patch->x0;

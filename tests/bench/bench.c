@@ -156,7 +156,7 @@ make_outline (const Bench *bench)
       guint x, y, w, h;
       TfOutline *outline = tf_outline_new_cap (tf_frame_get_info (bench->frame)->time, lon, lat, radius, 72);
       g_autoptr (TfMask) mask = tf_mask_new (bench->frame, outline, bench->params.mu_min, 0);
-      tf_mask_get_grid (mask, &x, &y, &w, &h);
+      tf_mask_get_box (mask, &x, &y, &w, &h);
       if (w * h >= BOX * BOX || w >= g->width)
         return outline;
       tf_outline_unref (outline);

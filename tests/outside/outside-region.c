@@ -59,7 +59,7 @@ static void
 write_pixels (JsonBuilder *builder, const TfFrame *frame, const TfMask *mask, const char *path)
 {
   guint x0, y0, w, h;
-  tf_mask_get_grid (mask, &x0, &y0, &w, &h);
+  tf_mask_get_box (mask, &x0, &y0, &w, &h);
   guint left = x0 > MARGIN ? x0 - MARGIN : 0, low = y0 > MARGIN ? y0 - MARGIN : 0;
   guint right = MIN (x0 + w + MARGIN, tf_frame_get_width (frame)),
         top = MIN (y0 + h + MARGIN, tf_frame_get_height (frame));
