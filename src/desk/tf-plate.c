@@ -113,10 +113,14 @@ tf_plate_dup_description (TfPlate *self)
     return problem != NULL ? g_strdup_printf (_ ("not shown: %s"), problem)
                            : g_strdup (_ ("no frame is open"));
   static const char *const looks[] = { N_ ("disk"), N_ ("unrolled"), N_ ("close") };
-  g_autofree char *time = tf_time_dup_iso (tf_frame_get_info (frame)->time, 0);
+  const TfFrameInfo *info = tf_frame_get_info (frame);
+  g_autofree char *time = tf_time_dup_iso (info->time, 0);
+  g_autofree char *vantage = tf_observer_dup_vantage (&info->geometry.observer);
   GString *text = g_string_new (NULL);
-  g_string_append_printf (text, _ ("frame of %s; look: %s; field range ± %.0f G"),
-                          time != NULL ? time : _ ("unknown time"),
+  g_string_append_printf (text, _ ("frame of %s"), time != NULL ? time : _ ("unknown time"));
+  if (vantage != NULL && !tf_geometry_is_map (&info->geometry))
+    g_string_append_printf (text, _ (" seen from %s"), vantage);
+  g_string_append_printf (text, _ ("; look: %s; field range ± %.0f G"),
                           _ (looks[tf_session_get_view (self->session)->look]),
                           tf_session_get_range (self->session));
   append_regions (self, text);
