@@ -6,6 +6,7 @@ description of a drawing) until it is so, ten seconds at most. What fails leaves
 program's log. A scenario that fails is tried once more; passing then is reported as flaky and not counted as passed.
 """
 import argparse
+import ctypes
 import os
 import re
 import shutil
@@ -36,6 +37,25 @@ def scenario(sentence):
 
 def shown(text):
     return text if len(text) <= 300 else text[:300] + "…"
+
+
+def set_text_scale(display, scale):
+    """Tells programs of a display how large text is wanted, as desktops do: the X resource Xft.dpi."""
+    x11 = ctypes.CDLL("libX11.so.6")
+    x11.XOpenDisplay.restype = ctypes.c_void_p
+    x11.XDefaultRootWindow.restype = ctypes.c_ulong
+    x11.XDefaultRootWindow.argtypes = [ctypes.c_void_p]
+    x11.XChangeProperty.argtypes = [ctypes.c_void_p, ctypes.c_ulong, ctypes.c_ulong, ctypes.c_ulong,
+                                    ctypes.c_int, ctypes.c_int, ctypes.c_char_p, ctypes.c_int]
+    x11.XCloseDisplay.argtypes = [ctypes.c_void_p]
+    connection = x11.XOpenDisplay(display.encode())
+    if not connection:
+        raise Failed(f"the display {display} cannot be reached")
+    text = f"Xft.dpi:\t{96 * scale:g}\n".encode()
+    resource_manager, string, replace = 23, 31, 0  # atoms of the X protocol; PropModeReplace
+    x11.XChangeProperty(connection, x11.XDefaultRootWindow(connection), resource_manager, string, 8,
+                        replace, text, len(text))
+    x11.XCloseDisplay(connection)
 
 
 class Window:
@@ -89,7 +109,7 @@ class Window:
         os.makedirs(os.path.join(config, "gtk-4.0"), exist_ok=True)
         with open(os.path.join(config, "gtk-4.0", "settings.ini"), "w", encoding="utf-8") as file:
             file.write("[Settings]\ngtk-enable-animations=0\ngtk-cursor-blink=0\n"
-                       f"gtk-font-name=DejaVu Sans {10 * self.text_scale:g}\n")
+                       "gtk-font-name=DejaVu Sans 10\n")
         return dict(keep, HOME=self.folder("home"), XDG_CONFIG_HOME=config, XDG_DATA_HOME=self.folder("data"),
                     XDG_CACHE_HOME=self.folder("cache"), XDG_STATE_HOME=self.folder("state"),
                     XDG_RUNTIME_DIR=self.folder("runtime"), LC_ALL="C.UTF-8", GTK_A11Y="atspi", GSK_RENDERER="cairo",
@@ -108,6 +128,7 @@ class Window:
         if not number:
             raise Failed("Xvfb did not begin")
         self.env = dict(self.environment(), DISPLAY=":" + number)
+        set_text_scale(":" + number, self.text_scale)
 
     def start_bus(self):
         out, into = os.pipe()

@@ -13,7 +13,7 @@ from harness import Failed, Window, fill
 
 PICTURES = [("mark-light", (1280, 720), False), ("mark-dark", (1280, 720), True),
             ("mark-wide-light", (1920, 1080), False), ("mark-wide-dark", (1920, 1080), True)]
-SHOWN = "2013-10-12T06:00"
+SHOWN = "2013-10-12T12:00"
 
 
 def to_frame(window, time):
