@@ -174,6 +174,19 @@ class_after (const char *now, const char *key)
   return g_strconcat (key, delta && strcmp (key, "α") != 0 ? "δ" : "", NULL);
 }
 
+static const char *
+class_now (TfSession *self, const TfRow *row)
+{
+  gboolean hoped = self->class_hoped != NULL && self->class_region == row->region_key;
+  return hoped ? self->class_hoped : row->mw_class;
+}
+
+void
+tf_session_forget_hoped (TfSession *self)
+{
+  g_clear_pointer (&self->class_hoped, g_free);
+}
+
 gboolean
 tf_session_set_class (TfSession *self, const char *key)
 {
@@ -181,16 +194,18 @@ tf_session_set_class (TfSession *self, const char *key)
   if (!tf_session_can_describe (self))
     return FALSE;
   const TfRow *row = chosen_row (self);
-  g_autofree char *text = class_after (row->mw_class, key);
+  g_autofree char *text = class_after (class_now (self, row), key);
   if (strcmp (text, "αδ") == 0 || strcmp (text, "δ") == 0)
     {
       tf_session_say (self, _ ("δ needs two polarities: give β, βγ or γ first."));
       return FALSE;
     }
-  if (strcmp (text, row->mw_class) == 0 || !has_person (self))
+  if (strcmp (text, class_now (self, row)) == 0 || !has_person (self))
     return FALSE;
   TfDeed *deed = deed_new (self, TF_DEED_CLASS);
-  deed->region = row->region_key;
+  deed->region = self->class_region = row->region_key;
+  g_free (self->class_hoped);
+  self->class_hoped = g_strdup (text);
   deed->text = g_steal_pointer (&text);
   return push (self, deed);
 }
@@ -281,6 +296,7 @@ refused (TfWriter *writer, TfDeed *deed, const char *message, TfSession *self)
   if (deed->kind == TF_DEED_KEEP)
     self->keeping = FALSE;
   self->judging = 0;
+  tf_session_forget_hoped (self);
   g_clear_pointer (&self->saved, g_free);
   tf_session_say (self, message);
   tf_session_refresh (self, FALSE);
@@ -331,6 +347,7 @@ tf_session_give_up (TfSession *self)
 {
   if (self->writer == NULL)
     return;
+  tf_session_forget_hoped (self);
   self->keeping = FALSE; /* the draft stays on the plate */
   self->judging = 0;
   g_clear_pointer (&self->saved, g_free);

@@ -159,11 +159,13 @@ static void
 fed (const TfFeedState *state, gpointer data)
 {
   TfSession *self = data;
+  g_auto (GStrv) next = NULL;
   if (state->finished)
     {
       say_fed (self, state);
       g_clear_pointer (&self->feed, tf_feed_free);
       tf_session_refresh (self, TRUE);
+      next = g_steal_pointer (&self->to_add);
     }
   g_free (self->progress);
   self->progress = NULL;
@@ -173,6 +175,20 @@ fed (const TfFeedState *state, gpointer data)
                                                        state->done, state->total);
   self->progress_share = state->total > 0 ? (double)state->done / state->total : -1;
   tf_session_emit (self, TF_SIGNAL_STATUS);
+  if (next != NULL)
+    tf_session_add_frames (self, next);
+}
+
+static void
+wait_in_line (TfSession *self, char *const *paths)
+{
+  GStrvBuilder *line = g_strv_builder_new ();
+  if (self->to_add != NULL)
+    g_strv_builder_addv (line, (const char **)self->to_add);
+  g_strv_builder_addv (line, (const char **)paths);
+  g_strfreev (self->to_add);
+  self->to_add = g_strv_builder_end (line);
+  g_strv_builder_unref (line);
 }
 
 void
@@ -182,12 +198,12 @@ tf_session_add_frames (TfSession *self, char *const *paths)
   if (self->path == NULL)
     look_at (self, paths);
   else if (!self->open)
-    {
-      g_strfreev (self->to_add);
-      self->to_add = g_strdupv ((char **)paths);
-    }
+    wait_in_line (self, paths);
   else if (self->feed != NULL)
-    tf_session_say (self, _ ("Frames are being taken in just now; add these when that is done."));
+    {
+      wait_in_line (self, paths);
+      tf_session_say (self, _ ("These frames are added when those under way are in."));
+    }
   else
     {
       self->feed = tf_feed_new (self->path, paths, fed, self);
@@ -210,6 +226,7 @@ tf_session_cancel (TfSession *self)
 {
   if (self->feed != NULL)
     tf_feed_cancel (self->feed);
+  g_clear_pointer (&self->to_add, g_strfreev);
   if (!self->loading)
     return;
   tf_loader_cancel (self->loader);

@@ -181,6 +181,8 @@ take_reading (TfSession *self, Reading *r)
   if (r->rows != NULL && r->frame == now)
     {
       tf_session_replace_regions (self, r->rows);
+      if (tf_session_get_pending (self) == 0)
+        tf_session_forget_hoped (self);
       tf_session_restore_draft (self, r->draft);
     }
   tf_session_replace_points (self, g_steal_pointer (&r->points), g_steal_pointer (&r->dots),

@@ -51,6 +51,8 @@ struct _TfSession
       wrote; /* the writer knows best what can be undone: only its connection writes under this replica */
   gboolean can_undo, can_redo;
   char *saved;
+  char *class_hoped; /* of class_region, on its way into the ledger; the next key builds on it */
+  gint64 class_region;
 
   GListStore *frames;
   GtkCustomFilter *filter;
@@ -63,7 +65,7 @@ struct _TfSession
   TfFeed *feed;
   char *progress; /* words of the feed */
   double progress_share;
-  char **to_add;      /* frames that wait until the ledger is open */
+  char **to_add;      /* frames that wait until the ledger is open or others are in */
   char *feed_trouble; /* files that could not be taken in, one sentence a line */
 
   TfView view;
@@ -125,6 +127,8 @@ void tf_session_measure_draft (TfSession *session);
 void tf_session_update_pick (TfSession *session);
 /** tf_session_restore_draft: from the ledger's text */
 void tf_session_restore_draft (TfSession *session, const char *text);
+/** tf_session_forget_hoped: what was on its way into the ledger is there, or will not come. */
+void tf_session_forget_hoped (TfSession *self);
 void tf_session_connect_writer (TfSession *session);
 
 G_END_DECLS

@@ -64,6 +64,7 @@ finalize (GObject *object)
   g_free (self->measure_problem);
   g_free (self->frame_problem);
   g_free (self->saved);
+  g_free (self->class_hoped);
   g_free (self->person);
   g_free (self->method);
   g_free (self->progress);
