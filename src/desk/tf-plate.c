@@ -6,8 +6,8 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-#include "tf-number.h"
 #include "tf-plate-private.h"
+#include "tf-slip-words.h"
 #include "tf-widget-style.h"
 
 G_DEFINE_FINAL_TYPE (TfPlate, tf_plate, GTK_TYPE_WIDGET)
@@ -28,9 +28,8 @@ append_field (GString *text, double gauss)
       g_string_append (text, _ (" · no value here"));
       return;
     }
-  g_autofree char *number = tf_number_dup_form (gauss, "+.0f", TRUE);
-  const char *minus = number[0] == '-' ? "−" : "+";
-  g_string_append_printf (text, " · %s%s G", minus, number + 1);
+  g_autofree char *number = tf_words_dup_signed (gauss, 0);
+  g_string_append_printf (text, " · %s G", number);
 }
 
 static char *
@@ -49,9 +48,11 @@ dup_readout (TfPlate *self)
   g_string_append_printf (text, "%s%.1f", place.lat_deg < 0 ? _ ("S") : _ ("N"),
                           fabs (place.lat_deg));
   if (isfinite (place.cmd_deg))
-    g_string_append_printf (text, _ (" · CMD %s%.1f · Stonyhurst %+.1f°"),
-                            place.cmd_deg < 0 ? _ ("E") : _ ("W"), fabs (place.cmd_deg),
-                            place.stonyhurst_lon_deg);
+    {
+      g_autofree char *lon = tf_words_dup_signed (place.stonyhurst_lon_deg, 1);
+      g_string_append_printf (text, _ (" · CMD %s%.1f · Stonyhurst %s°"),
+                              place.cmd_deg < 0 ? _ ("E") : _ ("W"), fabs (place.cmd_deg), lon);
+    }
   g_string_append_printf (text, _ (" · Carrington %.1f°"), place.carrington_lon_deg);
   if (isfinite (place.mu))
     g_string_append_printf (text, " · μ %.2f", place.mu);

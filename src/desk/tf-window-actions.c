@@ -34,6 +34,7 @@ index_of (const char *const *names, guint n, const char *name)
 
 /* -- ledger and frames */
 ACTION (new_ledger) { tf_window_choose_new_ledger (window); }
+ACTION (make_here) { tf_window_make_here (window); }
 ACTION (open_ledger) { tf_window_choose_ledger (window); }
 ACTION (open_demo) { tf_window_open_demo (window); }
 ACTION (add_frames) { tf_window_choose_frames (window); }
@@ -169,6 +170,7 @@ ACTION (cautions) { tf_window_show_cautions (window); }
 
 static const GActionEntry entries[] = {
   { "new-ledger", new_ledger, NULL, NULL, NULL },
+  { "make-here", make_here, NULL, NULL, NULL },
   { "open-ledger", open_ledger, NULL, NULL, NULL },
   { "open-demo", open_demo, NULL, NULL, NULL },
   { "open-path", open_path, "s", NULL, NULL },
@@ -275,6 +277,7 @@ tf_window_update_actions (TfWindow *self)
   static const char *const on_frame[] = { "draw", "polygon", "fit", "zoom-in", "zoom-out" };
   for (guint k = 0; k < G_N_ELEMENTS (on_frame); k++)
     enable (self, on_frame[k], frame);
+  enable (self, "make-here", tf_window_can_make_here (self));
   enable (self, "next-hint", hint);
   enable (self, "previous-hint", hint);
   enable (self, "keep", tf_session_can_keep (session));

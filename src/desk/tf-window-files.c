@@ -124,6 +124,13 @@ ask_letter (TfWindow *self, const char *path)
   gtk_window_present (GTK_WINDOW (dialog));
 }
 
+void
+tf_window_make_here (TfWindow *self)
+{
+  if (tf_window_can_make_here (self))
+    ask_letter (self, tf_session_get_ledger_path (tf_window_get_session (self)));
+}
+
 static void
 new_chosen (GtkNativeDialog *dialog, int response, TfWindow *self)
 {

@@ -17,6 +17,9 @@ void tf_window_update_actions (TfWindow *window);
 /* tf-window-files.c: choosing files, dropping them, asking for names */
 void tf_window_choose_ledger (TfWindow *window);
 void tf_window_choose_new_ledger (TfWindow *window);
+/** tf_window_make_here: makes the ledger that was asked for and is not there; asks its letter. */
+void tf_window_make_here (TfWindow *window);
+gboolean tf_window_can_make_here (TfWindow *window);
 void tf_window_choose_frames (TfWindow *window);
 void tf_window_open_demo (TfWindow *window);
 void tf_window_add_drop (TfWindow *window);

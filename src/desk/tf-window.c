@@ -25,7 +25,7 @@ struct _TfWindow
   GtkLabel *ledger_name, *age, *problem, *ledger_problem, *feed_trouble, *wings_words;
   GtkButton *person_button;
   GtkRevealer *problem_bar, *ledger_bar, *feed_bar, *loose_bar;
-  GtkWidget *wings_offer;
+  GtkWidget *wings_offer, *make_here;
   AdwClamp *roll_clamp, *slip_clamp;
   TfRoll *roll;
   TfPlatePane *plate_pane;
@@ -65,6 +65,14 @@ tf_window_say (TfWindow *self, const char *text)
   AdwToast *toast = adw_toast_new (plain);
   adw_toast_set_timeout (toast, TOAST_SECONDS);
   adw_toast_overlay_add_toast (self->toasts, toast);
+}
+
+gboolean
+tf_window_can_make_here (TfWindow *self)
+{
+  const char *path = tf_session_get_ledger_path (self->session);
+  return path != NULL && !tf_session_has_ledger (self->session)
+         && !g_file_test (path, G_FILE_TEST_EXISTS);
 }
 
 /* -- the age of the newest frame ------------------------------------------------------------- */
@@ -149,6 +157,7 @@ ledger_changed (TfWindow *self)
   gtk_window_set_title (GTK_WINDOW (self), title);
   gtk_button_set_label (self->person_button, person != NULL ? person : _ ("who?"));
   show_bar (self->ledger_bar, self->ledger_problem, problem);
+  gtk_widget_set_visible (self->make_here, tf_window_can_make_here (self));
   if (tf_session_has_ledger (self->session))
     tf_preferences_set ("ledger", path);
   show_page (self);
@@ -343,6 +352,7 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfWindow, feed_trouble);
   gtk_widget_class_bind_template_child (widget, TfWindow, loose_bar);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_offer);
+  gtk_widget_class_bind_template_child (widget, TfWindow, make_here);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_words);
   gtk_widget_class_bind_template_child (widget, TfWindow, roll_clamp);
   gtk_widget_class_bind_template_child (widget, TfWindow, slip_clamp);
