@@ -37,6 +37,17 @@ build_hint (JsonBuilder *builder, const char *path, const TfFrame *frame, const 
 }
 
 static void
+build_units (JsonBuilder *builder)
+{
+  json_builder_set_member_name (builder, "units");
+  json_builder_begin_object (builder);
+  for (const TfOption *option = tf_hint_options; option->name != NULL; option++)
+    if (*option->unit != '\0')
+      tf_json_string (builder, option->name, option->unit);
+  json_builder_end_object (builder);
+}
+
+static void
 build_hints (JsonBuilder *builder, const char *path, const TfFrame *frame, const GPtrArray *hints, const Words *words)
 {
   json_builder_begin_object (builder);
@@ -46,6 +57,7 @@ build_hints (JsonBuilder *builder, const char *path, const TfFrame *frame, const
   tf_json_string (builder, "name", TF_HINT_RULE);
   json_builder_set_member_name (builder, "parameters");
   tf_options_build_json (tf_hint_options, &words->hint, builder);
+  build_units (builder);
   json_builder_end_object (builder);
   json_builder_set_member_name (builder, "hints");
   json_builder_begin_array (builder);
@@ -55,15 +67,35 @@ build_hints (JsonBuilder *builder, const char *path, const TfFrame *frame, const
   json_builder_end_object (builder);
 }
 
+/* The rule and every number of it, with its unit. */
+static void
+print_rule (const TfHintParams *params)
+{
+  printf (_ ("rule %s:"), TF_HINT_RULE);
+  for (const TfOption *option = tf_hint_options; option->name != NULL; option++)
+    {
+      g_autofree char *value = tf_options_dup_value (option, params);
+      printf ("%s %s %s%s%s", option == tf_hint_options ? "" : ",", option->name, value, *option->unit != '\0' ? " " : "",
+              option->unit);
+    }
+  printf ("\n");
+}
+
 static void
 print_hints (const char *path, const GPtrArray *hints, const Words *words)
 {
+  print_rule (&words->hint);
   printf (ngettext ("%s: %u hint\n", "%s: %u hints\n", hints->len), path, hints->len);
   for (guint k = 0; k < hints->len; k++)
     {
       const TfHint *hint = g_ptr_array_index (hints, k);
       g_autofree char *text = tf_batch_dup_measure_text (&hint->measure, words->study);
       printf ("%u. %s, %s", k + 1, hint->unipolar ? _ ("unipolar") : _ ("bipole"), text);
+      for (guint j = 0; j < tf_notes_get_n (hint->cautions); j++)
+        {
+          g_autofree char *caution = tf_note_dup_text (tf_notes_get (hint->cautions, j), FALSE);
+          printf (_ ("  caution: %s\n"), caution);
+        }
     }
 }
 

@@ -7,6 +7,7 @@ import glob
 import json
 import math
 import os
+import re
 import shutil
 import signal
 import subprocess
@@ -170,6 +171,22 @@ def _():
     again = document("measure", "--json", path, "--outline", outline)
     for key in ("flux_unsigned_mx", "separation_deg", "axis_tilt_deg", "floor_gauss"):
         assert math.isclose(again[key], first["measure"][key], rel_tol=1e-6, abs_tol=1e-6), key
+
+
+@test("hints prints every number of the rule with its unit, and takes each as an option")
+def _():
+    path = first_disk()
+    rule = document("hints", "--json", path)[0]["rule"]
+    first = call("hints", path).stdout.splitlines()[0]
+    assert first.startswith(f"rule {rule['name']}: "), first
+    for name, value in rule["parameters"].items():
+        unit = rule["units"].get(name, "")
+        assert re.search(rf"[:,] {name} [-+.e0-9]+{' ' + re.escape(unit) if unit else ''}(,|$)", first), name
+    for factor in (1.0, 1.01):
+        words = [f"--{name}={value * factor}" for name, value in rule["parameters"].items()]
+        again = document("hints", "--json", *words, path)[0]["rule"]["parameters"]
+        for name, value in rule["parameters"].items():
+            assert math.isclose(again[name], value * factor, rel_tol=1e-12), name
 
 
 @test("measure gives every key, by cap and by both floors, and an empty place is one sentence")

@@ -7,6 +7,7 @@ int
 main (int argc, char **argv)
 {
   g_test_init (&argc, &argv, NULL);
+  add_hint_built_tests ();
   add_hint_real_tests ();
   return g_test_run ();
 }

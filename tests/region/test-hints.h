@@ -5,5 +5,6 @@
 
 #include <glib.h>
 
+void add_hint_built_tests (void);
 void add_hint_real_tests (void);
 void add_hint_simulated_tests (void);

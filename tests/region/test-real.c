@@ -9,7 +9,6 @@
 #include <math.h>
 
 #include "region-builder.h"
-#include "tf-hint.h"
 
 #define FRAME_2011 "mdi.fd_M_96m_lev182.20110401_000000_TAI.data.fits"
 #define FRAME_2010 "mdi.fd_m_96m_lev182.20101015_000000_TAI.data.fits"
@@ -79,29 +78,6 @@ test_region (gconstpointer data)
   tf_check_near ("distance from central meridian", m.cmd_deg, r->cmd, 8.0);
 }
 
-static void
-test_map_hints (void)
-{
-  TfGeometry g = { .projection = TF_PROJECTION_CEA,
-                   .width = 36,
-                   .height = 18,
-                   .crpix = { 18.5, 9.5 },
-                   .radius_mm = 695.7 };
-  TfHintParams params;
-  TfMeasureParams measure;
-  g_autoptr (GError) error = NULL;
-  g.cd[0][0] = 10.0;
-  g.cd[1][1] = 2.0 / 18.0;
-  g_assert_true (tf_geometry_make (&g));
-  g_autofree float *field = g_new0 (float, 36 * 18);
-  BuilderFrame how = { .radial = TRUE };
-  g_autoptr (TfFrame) frame = builder_frame_of (&g, &how, field);
-  tf_hint_params_init (&params);
-  tf_measure_params_init (&measure);
-  g_assert_null (tf_hints_find (frame, &params, &measure, NULL, &error));
-  g_assert_error (error, TF_REGION_ERROR, TF_REGION_ERROR_KIND);
-}
-
 void
 add_real_tests (void)
 {
@@ -111,5 +87,4 @@ add_real_tests (void)
           = g_strdup_printf ("/region/real/%s-has-its-leader-and-place", regions[k].name);
       g_test_add_data_func (path, &regions[k], test_region);
     }
-  g_test_add_func ("/region/hint/maps-are-refused-in-words", test_map_hints);
 }

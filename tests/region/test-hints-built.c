@@ -1,0 +1,156 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+
+/* Hints on small built frames: what is told with a hint, and what is refused. */
+
+#include <math.h>
+
+#include "hints-compare.h"
+#include "region-builder.h"
+#include "test-hints.h"
+
+static GPtrArray *
+hints_of (const BuilderPole *poles, guint n, double noise)
+{
+  BuilderFrame how;
+  builder_init (&how, 5.0, 15.0, 2.0);
+  how.half_deg = 17.0;
+  how.noise = noise;
+  how.fine = 1;
+  g_autoptr (TfFrame) frame = builder_frame (&how, poles, n);
+  GPtrArray *hints = hints_find (frame);
+  hints_print ("built", frame, hints);
+  return hints;
+}
+
+static const char *const told[]
+    = { "hint-neighbour-near", "hint-long", "hint-one-sided", "hint-at-edge", "hint-active-frame", "hint-leader-flips", NULL };
+
+/* Every hint has the caution @code (NULL: none), and none of the others. */
+static void
+check_told (const GPtrArray *hints, guint n, const char *code)
+{
+  g_assert_cmpuint (hints->len, ==, n);
+  for (guint k = 0; k < n; k++)
+    for (guint c = 0; told[c] != NULL; c++)
+      {
+        const TfHint *hint = g_ptr_array_index (hints, k);
+        gboolean has = tf_notes_find (hint->cautions, told[c]) != NULL;
+        if (has != (g_strcmp0 (told[c], code) == 0))
+          {
+            g_test_message ("%s: %s", told[c], has ? "there" : "missing");
+            g_test_fail ();
+          }
+      }
+}
+
+static void
+test_plain (void)
+{
+  BuilderPole poles[2];
+  builder_bipole (poles, 5.0, 15.0, 5.0, 8.0, 1e22, 1);
+  g_autoptr (GPtrArray) hints = hints_of (poles, 2, 10.0);
+  check_told (hints, 1, NULL);
+}
+
+/* Two balanced bipoles, one above the other, their edges some Mm apart. */
+static void
+test_neighbours (void)
+{
+  BuilderPole poles[4];
+  builder_bipole (poles, 5.0, 12.0, 4.5, 0.0, 1e22, 1);
+  builder_bipole (poles + 2, 5.0, 17.8, 4.5, 0.0, 1e22, 1);
+  g_autoptr (GPtrArray) hints = hints_of (poles, 4, 10.0);
+  check_told (hints, 2, "hint-neighbour-near");
+}
+
+static void
+test_neighbours_far (void)
+{
+  BuilderPole poles[4];
+  builder_bipole (poles, 5.0, 9.0, 4.5, 0.0, 1e22, 1);
+  builder_bipole (poles + 2, 5.0, 21.0, 4.5, 0.0, 1e22, 1);
+  g_autoptr (GPtrArray) hints = hints_of (poles, 4, 10.0);
+  check_told (hints, 2, NULL);
+}
+
+/* Wide poles that touch, far apart for their flux. */
+static void
+test_long (void)
+{
+  const BuilderPole poles[] = { { 10.8, 15.0, 2.2, 1e22, 0.0 }, { -0.8, 15.0, 2.2, -1e22, 0.0 } };
+  g_autoptr (GPtrArray) hints = hints_of (poles, 2, 10.0);
+  check_told (hints, 1, "hint-long");
+}
+
+static void
+test_one_sided (void)
+{
+  const BuilderPole poles[] = { { 7.0, 15.0, 0.7, 1e22, 0.0 }, { 3.0, 15.0, 0.7, -2.7e21, 0.0 } };
+  g_autoptr (GPtrArray) hints = hints_of (poles, 2, 10.0);
+  check_told (hints, 1, "hint-one-sided");
+}
+
+/* Poles nearly above each other; weak field in the east just at the floor draws one of them over when the floor is lowered. */
+static void
+test_flips (void)
+{
+  const BuilderPole poles[] = {
+    { 5.10, 16.6, 0.6, 4e21, 0.0 }, { 5.0, 13.4, 0.6, -4e21, 0.0 }, { 0.8, 16.6, 1.6, 5.6e20, 3.0 }
+  };
+  g_autoptr (GPtrArray) hints = hints_of (poles, 3, 10.0);
+  check_told (hints, 1, "hint-leader-flips");
+}
+
+static void
+test_maps (void)
+{
+  TfGeometry g = { .projection = TF_PROJECTION_CEA, .width = 36, .height = 18, .crpix = { 18.5, 9.5 },
+                   .radius_mm = 695.7 };
+  TfHintParams params;
+  TfMeasureParams measure;
+  g_autoptr (GError) error = NULL;
+  g.cd[0][0] = 10.0;
+  g.cd[1][1] = 2.0 / 18.0;
+  g_assert_true (tf_geometry_make (&g));
+  g_autofree float *field = g_new0 (float, 36 * 18);
+  BuilderFrame how = { .radial = TRUE };
+  g_autoptr (TfFrame) frame = builder_frame_of (&g, &how, field);
+  tf_hint_params_init (&params);
+  tf_measure_params_init (&measure);
+  g_assert_null (tf_hints_find (frame, &params, &measure, NULL, &error));
+  g_assert_error (error, TF_REGION_ERROR, TF_REGION_ERROR_KIND);
+  g_assert_nonnull (strstr (error->message, "different days"));
+}
+
+/* Every number of the rule can be set, and has a unit unless it is a share, a cosine or a score. */
+static void
+test_options (void)
+{
+  TfHintParams params;
+  guint n = 0;
+  tf_hint_params_init (&params);
+  for (const TfOption *option = tf_hint_options; option->name != NULL; option++, n++)
+    {
+      g_assert_cmpuint (option->offset, ==, n * sizeof (double));
+      g_assert_true (*option->sentence != '\0');
+      tf_check_between (option->name, option->fallback, option->min, option->max);
+      if (*option->unit == '\0')
+        tf_check_between (option->name, option->fallback, 0.0, 1.3);
+    }
+  g_assert_cmpuint (n * sizeof (double), ==, sizeof params);
+}
+
+void
+add_hint_built_tests (void)
+{
+  g_test_add_func ("/region/hint/a-plain-bipole-has-no-caution", test_plain);
+  g_test_add_func ("/region/hint/a-near-neighbour-is-told", test_neighbours);
+  g_test_add_func ("/region/hint/a-far-neighbour-is-not-told", test_neighbours_far);
+  g_test_add_func ("/region/hint/a-long-region-is-told", test_long);
+  g_test_add_func ("/region/hint/a-one-sided-region-is-told", test_one_sided);
+  g_test_add_func ("/region/hint/a-leader-that-flips-is-told", test_flips);
+  g_test_add_func ("/region/hint/maps-are-refused-in-words", test_maps);
+  g_test_add_func ("/region/hint/every-number-of-the-rule-is-an-option", test_options);
+}
