@@ -346,13 +346,19 @@ tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale
 }
 
 void
+tf_hint_grid_free_levels (TfHintGrid *grid)
+{
+  g_clear_pointer (&grid->mu, g_free);
+  g_clear_pointer (&grid->low, g_free);
+  g_clear_pointer (&grid->high, g_free);
+}
+
+void
 tf_hint_grid_free (TfHintGrid *grid)
 {
   if (grid == NULL)
     return;
+  tf_hint_grid_free_levels (grid);
   g_free (grid->field);
-  g_free (grid->mu);
-  g_free (grid->low);
-  g_free (grid->high);
   g_free (grid);
 }

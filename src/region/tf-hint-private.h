@@ -57,6 +57,8 @@ typedef struct
 /* tf-hint-grid.c */
 TfHintGrid *tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale, const TfWork *work);
 void tf_hint_grid_free (TfHintGrid *grid);
+/** tf_hint_grid_free_levels: mu, low and high, which only the pieces are made from. */
+void tf_hint_grid_free_levels (TfHintGrid *grid);
 /** tf_hint_grid_unit: direction of a point of the plane, in cells. */
 void tf_hint_grid_unit (const TfHintGrid *grid, double x, double y, double unit[3]);
 /** tf_hint_blur: Gaussian of @sigma cells over n x n values, in place; @room as large. Beyond the border is nothing. */

@@ -181,6 +181,7 @@ tf_hints_find (const TfFrame *frame, const TfHintParams *params, const TfMeasure
   if (grid == NULL)
     return set_cancelled (error), NULL;
   g_autoptr (TfHintPieces) pieces = tf_hint_pieces_new (grid, params);
+  tf_hint_grid_free_levels (grid);
   tf_hint_join (pieces);
   Search search = { frame, pieces, measure, NULL };
   return gather (&search, work, error);
