@@ -57,14 +57,14 @@ def count(output):
     return passed, failed, skipped
 
 
-def run_test(test, sanitize):
+def run_test(test, folder, sanitize):
     env = dict(os.environ, **test["env"])
     if sanitize:
         env.update(ASAN_OPTIONS="detect_leaks=1:abort_on_error=0", UBSAN_OPTIONS="halt_on_error=1:print_stacktrace=1",
                    TF_SANITIZED="1")
     command = test["cmd"] + (["-k"] if "--tap" in test["cmd"] and "-k" not in test["cmd"] else [])  # go on after a failure
     try:
-        done = subprocess.run(command, cwd=test["workdir"] or None, env=env, stdout=subprocess.PIPE, stderr=subprocess.STDOUT,
+        done = subprocess.run(command, cwd=test["workdir"] or folder, env=env, stdout=subprocess.PIPE, stderr=subprocess.STDOUT,
                               text=True, errors="replace", timeout=max(test["timeout"], 60) * (4 if sanitize else 2))
         output, code = done.stdout, done.returncode
     except subprocess.TimeoutExpired as stopped:
@@ -106,7 +106,7 @@ def main():
             if (sanitize and suite not in SANITIZED) or (names - {"sanitize"} and suite not in names):
                 continue
             begun = time.monotonic()
-            passed, failed, skipped, output = run_test(test, sanitize)
+            passed, failed, skipped, output = run_test(test, os.path.abspath(folder), sanitize)
             name = test["name"] + (" (sanitize)" if sanitize else "")
             key = suite + (" (sanitize)" if sanitize else "")
             times[key] = times.get(key, 0) + time.monotonic() - begun
