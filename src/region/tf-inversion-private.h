@@ -31,7 +31,7 @@ typedef struct
  * tf_traced_new: (transfer full):
  * @outline: at the frame's time
  * @shift_x, @shift_y: of the nodes, in steps
- * @full: with transverse field
+ * @full: with transverse field; else, unless a potential field is used, nodes outside the outline are not looked at
  */
 TfTraced *tf_traced_new (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *measure,
                          const TfComplexityParams *params, double shift_x, double shift_y, gboolean full);

@@ -14,6 +14,7 @@
 
 #include <glib.h>
 
+#include "tf-fill-private.h"
 #include "tf-frame.h"
 
 G_BEGIN_DECLS
@@ -46,6 +47,7 @@ typedef struct
   double fwhm_mm;
   double shift_x, shift_y;    /* of all nodes, in steps: 0 to 1 */
   guint most_nodes;           /* a side */
+  const TfFill *only;         /* nodes outside stay unseen; NULL: all are looked at */
 } TfPatchSpec;
 
 /** tf_patch_new: (transfer full). */

@@ -287,8 +287,19 @@ tf_patch_look (const TfPatch *p, double x, double y, double *value, double *dx, 
   return TRUE;
 }
 
+static gboolean
+is_wanted (const TfPatch *p, const TfFill *only, gsize k)
+{
+  double x, y, unit[3];
+  if (only == NULL)
+    return TRUE;
+  tf_patch_node (p, k, &x, &y);
+  tf_patch_unit (p, x, y, unit);
+  return tf_fill_contains (only, unit);
+}
+
 static void
-fill (TfPatch *p)
+fill (TfPatch *p, const TfFill *only)
 {
   gsize coarse = 0, n_seen = 0;
   Level level;
@@ -300,7 +311,7 @@ fill (TfPatch *p)
       double j[2][2];
       Seen seen;
       find_jacobian (p, k, j);
-      if (!is_whole ((const double (*)[2])j, p->u[k], p->v[k])
+      if (!is_whole ((const double (*)[2])j, p->u[k], p->v[k]) || !is_wanted (p, only, k)
           || !look (&seen, &level, p->u[k], p->v[k], (const double (*)[2])j, p->sigma_mm))
         continue;
       p->seen[k] = 1;
@@ -336,7 +347,7 @@ tf_patch_new (const TfFrame *frame, const TfPatchSpec *spec)
   p->v = g_new (double, p->n);
   p->frame = tf_frame_ref ((TfFrame *)frame);
   p->sigma_mm = spec->fwhm_mm / FWHM_SIGMA;
-  fill (p);
+  fill (p, spec->only);
   return p;
 }
 

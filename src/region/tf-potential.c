@@ -10,7 +10,7 @@
 #include "tf-plane-field-private.h"
 
 /* Nodes a side, at most: a wider box has coarser steps. */
-enum { MOST_NODES = 1024 };
+enum { MOST_NODES = 512 };
 /* Where the Sun is seen at a grazing angle nothing is added. */
 static const double LEAST_MU = 0.1;
 

@@ -22,7 +22,7 @@ typedef struct
   const TfTraced *field;   /* of the magnetogram, on the same nodes */
   TfPatch *patch;          /* of the intensity */
   double *level;           /* intensity over the quiet Sun's; 1 where not seen */
-  gint32 *spot;            /* number of the spot a node belongs to, or -1 */
+  gint32 *spot;            /* number of the spot a node belongs to; -1 none, -2 one too small */
   guint8 *umbra;
   double msh;              /* of a node */
   GArray *found;           /* TfSpot, by number */
@@ -66,20 +66,19 @@ tally_add (Tally *tally, const Sight *s, gsize k, double weight)
     tally->sum[i] += weight * unit[i];
 }
 
-/* The nodes connected with @start, by sides and corners, for which @kind is not 0, get number @number in @numbers (-1 before). */
-static guint
-flood (const Sight *s, const guint8 *kind, gint32 *numbers, gsize start, gint32 number, GArray *stack)
+/* The nodes connected with @start, by sides and corners, for which @kind is not 0, become @nodes and get number @number in @numbers, where
+ * they had -1. */
+static void
+flood (const Sight *s, const guint8 *kind, gint32 *numbers, gsize start, gint32 number, GArray *nodes)
 {
   const TfPatch *p = s->patch;
-  guint n = 0;
-  g_array_append_val (stack, start);
+  g_array_set_size (nodes, 0);
+  g_array_append_val (nodes, start);
   numbers[start] = number;
-  while (stack->len > 0)
+  for (guint at = 0; at < nodes->len; at++)
     {
-      gsize at = g_array_index (stack, gsize, stack->len - 1);
-      guint x = (guint)(at % p->width), y = (guint)(at / p->width);
-      g_array_set_size (stack, stack->len - 1);
-      n++;
+      gsize k = g_array_index (nodes, gsize, at);
+      guint x = (guint)(k % p->width), y = (guint)(k / p->width);
       for (guint j = y > 0 ? y - 1 : 0; j <= MIN (y + 1, p->height - 1); j++)
         for (guint i = x > 0 ? x - 1 : 0; i <= MIN (x + 1, p->width - 1); i++)
           {
@@ -87,58 +86,72 @@ flood (const Sight *s, const guint8 *kind, gint32 *numbers, gsize start, gint32 
             if (!kind[next] || numbers[next] != -1)
               continue;
             numbers[next] = number;
-            g_array_append_val (stack, next);
+            g_array_append_val (nodes, next);
           }
     }
-  return n;
 }
 
 /* -- umbrae of one spot ------------------------------------------------------------------------------------ */
 
-static void
-find_umbrae (TfSpot *spot, const Sight *s, gint32 number, gint32 *umbrae, GArray *stack)
+static gboolean
+is_near (const Sight *s, gsize a, gsize b)
 {
-  g_autoptr (GArray) tallies = g_array_new (FALSE, TRUE, sizeof (Tally));
-  for (gsize k = 0; k < s->patch->n; k++)
-    {
-      if (s->spot[k] != number || !s->umbra[k])
-        continue;
-      if (umbrae[k] == -1)
-        {
-          flood (s, s->umbra, umbrae, k, (gint32)tallies->len, stack);
-          g_array_set_size (tallies, tallies->len + 1);
-        }
-      tally_add (&g_array_index (tallies, Tally, umbrae[k]), s, k, 1.0);
-    }
-  spot->umbrae = tallies->len;
-  if (spot->umbrae < 2)
-    return;
-  for (gsize a = 0; a < s->patch->n; a++)
-    for (gsize b = a + 1; b < s->patch->n && !spot->delta && s->spot[a] == number && umbrae[a] >= 0; b++)
+  double u[3], v[3], chord2 = 0.0;
+  node_unit (s, a, u);
+  node_unit (s, b, v);
+  for (guint i = 0; i < 3; i++)
+    chord2 += (u[i] - v[i]) * (u[i] - v[i]);
+  return 2.0 * asin (0.5 * sqrt (chord2)) < DELTA_DEG * TF_DEG;
+}
+
+/* Whether umbrae of both signs come near each other; @umbrae numbers the nodes of @dark. */
+static gboolean
+has_delta (const Sight *s, const GArray *dark, const gint32 *umbrae, const GArray *tallies)
+{
+  for (guint i = 0; i < dark->len; i++)
+    for (guint j = i + 1; j < dark->len; j++)
       {
-        if (s->spot[b] != number || umbrae[b] < 0 || umbrae[b] == umbrae[a])
-          continue;
-        double u[3], v[3];
-        if (g_array_index (tallies, Tally, umbrae[a]).field * g_array_index (tallies, Tally, umbrae[b]).field >= 0.0)
-          continue;
-        node_unit (s, a, u);
-        node_unit (s, b, v);
-        double chord = sqrt ((u[0] - v[0]) * (u[0] - v[0]) + (u[1] - v[1]) * (u[1] - v[1]) + (u[2] - v[2]) * (u[2] - v[2]));
-        spot->delta = 2.0 * asin (0.5 * chord) < DELTA_DEG * TF_DEG;
+        gsize a = g_array_index (dark, gsize, i), b = g_array_index (dark, gsize, j);
+        if (g_array_index (tallies, Tally, umbrae[a]).field * g_array_index (tallies, Tally, umbrae[b]).field < 0.0 && is_near (s, a, b))
+          return TRUE;
       }
+  return FALSE;
 }
 
 static void
-describe (TfSpot *spot, const Sight *s, gint32 number)
+find_umbrae (TfSpot *spot, const Sight *s, const GArray *nodes, gint32 *umbrae)
+{
+  g_autoptr (GArray) tallies = g_array_new (FALSE, TRUE, sizeof (Tally));
+  g_autoptr (GArray) dark = g_array_new (FALSE, FALSE, sizeof (gsize));
+  g_autoptr (GArray) one = g_array_new (FALSE, FALSE, sizeof (gsize));
+  for (guint at = 0; at < nodes->len; at++)
+    {
+      gsize k = g_array_index (nodes, gsize, at);
+      if (!s->umbra[k])
+        continue;
+      if (umbrae[k] == -1)
+        {
+          flood (s, s->umbra, umbrae, k, (gint32)tallies->len, one);
+          g_array_set_size (tallies, tallies->len + 1);
+        }
+      tally_add (&g_array_index (tallies, Tally, umbrae[k]), s, k, 1.0);
+      g_array_append_val (dark, k);
+    }
+  spot->umbrae = tallies->len;
+  spot->delta = spot->umbrae > 1 && has_delta (s, dark, umbrae, tallies);
+}
+
+static void
+describe (TfSpot *spot, const Sight *s, const GArray *nodes)
 {
   Tally whole = { 0 }, umbra = { 0 };
-  for (gsize k = 0; k < s->patch->n; k++)
-    if (s->spot[k] == number)
-      {
-        tally_add (&whole, s, k, 1.0);
-        if (s->umbra[k])
-          tally_add (&umbra, s, k, 1.0);
-      }
+  for (guint at = 0; at < nodes->len; at++)
+    {
+      gsize k = g_array_index (nodes, gsize, at);
+      tally_add (&whole, s, k, 1.0);
+      if (s->umbra[k])
+        tally_add (&umbra, s, k, 1.0);
+    }
   const Tally *of = umbra.n > 0.0 ? &umbra : &whole;
   tf_sphere_lonlat (whole.sum, &spot->lon_deg, &spot->lat_deg);
   spot->area_msh = whole.n * s->msh;
@@ -150,10 +163,9 @@ describe (TfSpot *spot, const Sight *s, gint32 number)
 static void
 find_spots (Sight *s, const TfCompanionParams *params)
 {
-  g_autoptr (GArray) stack = g_array_new (FALSE, FALSE, sizeof (gsize));
+  g_autoptr (GArray) nodes = g_array_new (FALSE, FALSE, sizeof (gsize));
   g_autofree guint8 *dark = g_new0 (guint8, s->patch->n);
   g_autofree gint32 *umbrae = g_new (gint32, s->patch->n);
-  gint32 number = 0;
   memset (umbrae, 0xff, s->patch->n * sizeof *umbrae);
   for (gsize k = 0; k < s->patch->n; k++)
     {
@@ -162,21 +174,19 @@ find_spots (Sight *s, const TfCompanionParams *params)
     }
   for (gsize k = 0; k < s->patch->n; k++)
     {
+      TfSpot spot = { 0 };
       if (!dark[k] || s->spot[k] != -1)
         continue;
-      TfSpot spot = { 0 };
-      guint n = flood (s, dark, s->spot, k, number, stack);
-      if (n * s->msh >= params->smallest_msh)
+      flood (s, dark, s->spot, k, (gint32)s->found->len, nodes);
+      if (nodes->len * s->msh >= params->smallest_msh)
         {
-          describe (&spot, s, number);
-          find_umbrae (&spot, s, number, umbrae, stack);
+          describe (&spot, s, nodes);
+          find_umbrae (&spot, s, nodes, umbrae);
           g_array_append_val (s->found, spot);
-          number++;
           continue;
         }
-      for (gsize at = k; at < s->patch->n; at++)
-        if (s->spot[at] == number)
-          s->spot[at] = -2;
+      for (guint at = 0; at < nodes->len; at++)
+        s->spot[g_array_index (nodes, gsize, at)] = -2;
     }
 }
 

@@ -123,8 +123,10 @@ tf_traced_new (const TfFrame *frame, const TfOutline *outline, const TfMeasurePa
   TfTraced *t = g_new0 (TfTraced, 1);
   TfPatchSpec spec;
   tf_traced_spec (&spec, frame, outline, params, shift_x, shift_y);
-  t->patch = tf_patch_new (frame, &spec);
   t->fill = tf_fill_new (outline);
+  if (!full && measure->field_used != TF_FIELD_USED_POTENTIAL)
+    spec.only = t->fill;
+  t->patch = tf_patch_new (frame, &spec);
   gsize n = t->patch->n;
   t->inside = g_new0 (guint8, n);
   t->field = g_new0 (double, n);
