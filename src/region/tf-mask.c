@@ -31,6 +31,7 @@ typedef struct
   Unit *unit;
   double *mu, *area;
   guint8 *inside;
+  guint *at; /* columns of the box that are looked at */
 } Row;
 
 typedef struct
@@ -90,7 +91,23 @@ count_most (const TfMask *mask, const TfFrame *frame, float least)
   return n;
 }
 
-/* @least > 0: weaker pixels, and those without a value, are passed over. */
+/* Puts the columns that come into question to the front. @least > 0: weaker pixels, and those without a value, are passed
+ * over. */
+static guint
+choose_columns (const Row *row, const float *field, guint width, double mu_min, float least, gboolean map)
+{
+  guint n = 0;
+  for (guint k = 0; k < width; k++)
+    {
+      if (!(map || row->mu[k] >= mu_min) || (least > 0.0f && !(fabsf (field[k]) >= least)))
+        continue;
+      if (n < k)
+        memcpy (row->unit[n], row->unit[k], sizeof (Unit));
+      row->at[n++] = k;
+    }
+  return n;
+}
+
 static void
 fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min, float least,
           guint y, const Row *row)
@@ -103,11 +120,12 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
   if (least > 0.0f && count_above (field, box->width, least) == 0)
     return;
   tf_geometry_row_sun (g, y + 1.0, box->x0 + 1.0, box->width, row->unit, row->mu, row->area);
-  tf_fill_row (fill, (const Unit *)row->unit, box->width, row->inside);
-  for (guint k = 0; k < box->width; k++)
+  guint n = choose_columns (row, field, box->width, mu_min, least, map);
+  tf_fill_row (fill, (const Unit *)row->unit, n, row->inside);
+  for (guint j = 0; j < n; j++)
     {
-      double mu = map ? 1.0 : row->mu[k];
-      if (!row->inside[k] || !(mu >= mu_min) || (least > 0.0f && !(fabsf (field[k]) >= least)))
+      guint k = row->at[j];
+      if (!row->inside[j])
         continue;
       if (!isfinite (field[k]))
         {
@@ -118,9 +136,9 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
       pixel->x = box->x0 + k;
       pixel->y = y;
       pixel->field = field[k];
-      pixel->mu = (float)mu;
+      pixel->mu = map ? 1.0f : (float)row->mu[k];
       pixel->area_mm2 = row->area[k];
-      memcpy (pixel->unit, row->unit[k], sizeof pixel->unit);
+      memcpy (pixel->unit, row->unit[j], sizeof pixel->unit);
     }
 }
 
@@ -131,13 +149,15 @@ fill_rows (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min
   Row row = { .unit = g_new (Unit, n),
               .mu = g_new (double, n),
               .area = g_new (double, n),
-              .inside = g_new (guint8, n) };
+              .inside = g_new (guint8, n),
+              .at = g_new (guint, n) };
   for (guint y = 0; y < mask->box.height; y++)
     fill_row (mask, frame, fill, mu_min, least, mask->box.y0 + y, &row);
   g_free (row.unit);
   g_free (row.mu);
   g_free (row.area);
   g_free (row.inside);
+  g_free (row.at);
 }
 
 TfOutline *
