@@ -1,7 +1,6 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-#include <complex.h>
 #include <math.h>
 #include <string.h>
 
@@ -13,6 +12,8 @@
 /* Corrections for the changing direction end here. */
 enum { MOST_STEPS = 16 };
 static const double LEFT_ENOUGH = 1e-3;
+/* And where a step takes less than this away: very wide boxes, which no plane fits. */
+static const double SLOW = 0.85;
 
 typedef struct
 {
@@ -79,9 +80,16 @@ wave (const Box *box, guint row, guint column, double *kx, double *ky)
   *ky = 2.0 * TF_PI * j / (box->height * box->step);
 }
 
-/* Adds to @phi (and at k = 0 to Bz itself) the potential of the field in box->real as seen along @n. */
+/* A complex number as two reals: the language's own product and quotient look for infinities at every step. */
+typedef struct
+{
+  double re, im;
+} Wave;
+
+/* Adds to @phi (and at k = 0 to Bz itself) the potential of the field in box->real as seen along @n: with a = nz |k| and
+ * b = nx kx + ny ky, seen / (a - i b) = seen (a + i b) / (a^2 + b^2). */
 static void
-add_potential (Box *box, const double n[3], double complex *phi)
+add_potential (Box *box, const double n[3], Wave *phi)
 {
   double count = (double)box->width * box->height;
   fftw_execute (box->forward);
@@ -91,9 +99,10 @@ add_potential (Box *box, const double n[3], double complex *phi)
         gsize at = (gsize)row * box->half + column;
         double kx, ky;
         wave (box, row, column, &kx, &ky);
-        double k = hypot (kx, ky);
-        double complex seen = box->spectrum[at] / count;
-        phi[at] += at == 0 ? seen / n[2] : seen / (n[2] * k - I * (n[0] * kx + n[1] * ky));
+        double a = at == 0 ? n[2] : n[2] * sqrt (kx * kx + ky * ky), b = n[0] * kx + n[1] * ky;
+        double re = box->spectrum[at][0] / count, im = box->spectrum[at][1] / count, size = a * a + b * b;
+        phi[at].re += (re * a - im * b) / size;
+        phi[at].im += (re * b + im * a) / size;
       }
 }
 
@@ -106,9 +115,9 @@ typedef enum
   PART_Z_DY
 } Part;
 
-/* One component of the field over the whole box, into box->real. */
+/* One component of the field over the whole box, into box->real: phi times a real or an imaginary number. */
 static void
-make_part (Box *box, const double complex *phi, Part part)
+make_part (Box *box, const Wave *phi, Part part)
 {
   for (guint row = 0; row < box->height; row++)
     for (guint column = 0; column < box->half; column++)
@@ -116,16 +125,16 @@ make_part (Box *box, const double complex *phi, Part part)
         gsize at = (gsize)row * box->half + column;
         double kx, ky;
         wave (box, row, column, &kx, &ky);
-        double k = hypot (kx, ky);
-        double complex factor = part == PART_X      ? -I * kx
-                                : part == PART_Y    ? -I * ky
-                                : part == PART_Z    ? k
-                                : part == PART_Z_DX ? I * kx * k
-                                                    : I * ky * k;
-        box->spectrum[at] = factor * phi[at];
+        double k = sqrt (kx * kx + ky * ky);
+        double imaginary = part == PART_X ? -kx : part == PART_Y ? -ky : part == PART_Z_DX ? kx * k : ky * k;
+        box->spectrum[at][0] = part == PART_Z ? k * phi[at].re : -imaginary * phi[at].im;
+        box->spectrum[at][1] = part == PART_Z ? k * phi[at].im : imaginary * phi[at].re;
       }
   if (part == PART_Z)
-    box->spectrum[0] = phi[0];
+    {
+      box->spectrum[0][0] = phi[0].re;
+      box->spectrum[0][1] = phi[0].im;
+    }
   fftw_execute (box->backward);
 }
 
@@ -145,7 +154,7 @@ copy_in (Box *box, const double *in, guint width, guint height)
 }
 
 static void
-make_field (TfPlaneField *field, Box *box, const double complex *phi)
+make_field (TfPlaneField *field, Box *box, const Wave *phi)
 {
   make_part (box, phi, PART_X);
   copy_out (box, field->bx, field->width, field->height);
@@ -189,11 +198,11 @@ mean_line (guint width, guint height, const double (*line)[3], const guint8 *use
 /* Newest corrections are kept only while they help. */
 static void
 correct (TfPlaneField *field, Box *box, const double *seen, const double (*line)[3], const guint8 *use, const double n[3],
-         double complex *phi)
+         Wave *phi)
 {
   gsize size = (gsize)box->half * box->height;
   g_autofree double *rest = g_new (double, (gsize)field->width * field->height);
-  g_autofree double complex *before = g_malloc_n (size, sizeof *before);
+  g_autofree Wave *before = g_malloc_n (size, sizeof *before);
   field->left = find_rest (field, seen, line, use, n, rest);
   while (field->left > LEFT_ENOUGH && field->steps < MOST_STEPS)
     {
@@ -209,7 +218,10 @@ correct (TfPlaneField *field, Box *box, const double *seen, const double (*line)
           make_field (field, box, phi);
           return;
         }
+      gboolean slow = left > SLOW * field->left;
       field->left = left;
+      if (slow)
+        return;
     }
 }
 
@@ -230,7 +242,7 @@ tf_plane_field_new (guint width, guint height, double step, const double *seen, 
   field->bz = g_new (double, count);
   field->bz_dx = g_new (double, count);
   field->bz_dy = g_new (double, count);
-  g_autofree double complex *phi = g_malloc0_n ((gsize)box.half * box.height, sizeof *phi);
+  g_autofree Wave *phi = g_malloc0_n ((gsize)box.half * box.height, sizeof *phi);
   copy_in (&box, seen, width, height);
   add_potential (&box, n, phi);
   make_field (field, &box, phi);
