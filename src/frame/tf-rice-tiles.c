@@ -103,40 +103,89 @@ to_floats (const gint32 *stored, guint n, double scale, double zero, gboolean ha
     }
 }
 
+/* Rows being read, two at a time. */
+typedef struct
+{
+  TfFits *fits;
+  LONGLONG row; /* of the table, 1-based, of the first */
+  LONGLONG *lengths, *offsets;
+  GByteArray *bytes[2];
+  gint32 *stored[2];
+} Rows;
+
+/* A row that is packed in another way, in another column. */
+static gboolean
+read_other (const Rows *rows, guint k, float *line, int *status)
+{
+  const TfFits *fits = rows->fits;
+  LONGLONG pixel = (rows->row + k - 1) * fits->axes[0] + 1;
+  float none = NAN;
+  int any = 0;
+  return fits_read_img (fits->file, TFLOAT, pixel, fits->axes[0], &none, line, &any, status) == 0;
+}
+
+static gboolean
+fetch (const Rows *rows, guint k, guint into, int *status)
+{
+  const TfFits *fits = rows->fits;
+  return rows->lengths[k] <= fits->axes[0] * 8 + 1024
+         && read_bytes (fits->file, fits->rice.column, rows->row + k, rows->lengths[k],
+                        rows->offsets[k], rows->bytes[into], status);
+}
+
+/* Rows @k and, of two, the next. */
+static gboolean
+unpack (const Rows *rows, guint k, guint n, float *out, int *status)
+{
+  const TfRice *r = &rows->fits->rice;
+  guint width = (guint)rows->fits->axes[0];
+  GByteArray *const *b = rows->bytes;
+  gboolean in_range = r->blank >= G_MININT32 && r->blank <= G_MAXINT32;
+  for (guint i = 0; i < n; i++)
+    if (!fetch (rows, k + i, i, status))
+      return FALSE;
+  if (n == 2)
+    {
+      const guint8 *const bytes[2] = { b[0]->data, b[1]->data };
+      const gsize lengths[2] = { b[0]->len, b[1]->len };
+      if (!tf_rice_decode_two (bytes, lengths, r->pixel_bytes, r->block, width, rows->stored))
+        return FALSE;
+    }
+  else if (!tf_rice_decode (b[0]->data, b[0]->len, r->pixel_bytes, r->block, width, rows->stored[0]))
+    return FALSE;
+  for (guint i = 0; i < n; i++)
+    to_floats (rows->stored[i], width, r->scale, r->zero, r->has_blank && in_range,
+               (gint32)r->blank, out + (gsize)i * width);
+  return TRUE;
+}
+
 gboolean
 tf_rice_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, gboolean *damaged,
                    int *status)
 {
-  const TfRice *r = &fits->rice;
-  guint width = (guint)fits->axes[0];
-  LONGLONG row = (LONGLONG)(plane - 1) * fits->axes[1] + first + 1,
-           largest = (LONGLONG)width * 8 + 1024;
+  gsize width = (gsize)fits->axes[0];
   g_autofree LONGLONG *lengths = g_new0 (LONGLONG, n), *offsets = g_new0 (LONGLONG, n);
-  g_autofree gint32 *stored = g_new (gint32, width);
-  g_autoptr (GByteArray) bytes = g_byte_array_new ();
-  float none = NAN;
-  int any = 0;
-  gboolean in_range = r->blank >= G_MININT32 && r->blank <= G_MAXINT32;
-  if (fits_read_descriptsll (fits->file, r->column, row, n, lengths, offsets, status) != 0)
+  g_autofree gint32 *stored = g_new (gint32, 2 * width);
+  g_autoptr (GByteArray) one = g_byte_array_new (), two = g_byte_array_new ();
+  Rows rows = { fits,    (LONGLONG)(plane - 1) * fits->axes[1] + first + 1,
+                lengths, offsets,
+                { one, two }, { stored, stored + width } };
+  if (fits_read_descriptsll (fits->file, fits->rice.column, rows.row, n, lengths, offsets, status)
+      != 0)
     return FALSE;
-  for (guint k = 0; k < n; k++)
+  for (guint k = 0, step; k < n; k += step)
     {
-      float *line = out + (gsize)k * width;
-      if (lengths[k] == 0) /* packed in another way, in another column */
+      float *line = out + k * width;
+      step = k + 1 < n && lengths[k] != 0 && lengths[k + 1] != 0 ? 2 : 1;
+      if (lengths[k] == 0)
         {
-          LONGLONG pixel = (row + k - 1) * fits->axes[0] + 1;
-          if (fits_read_img (fits->file, TFLOAT, pixel, width, &none, line, &any, status) != 0)
+          if (!read_other (&rows, k, line, status))
             return FALSE;
           continue;
         }
-      *damaged
-          = lengths[k] > largest
-            || !read_bytes (fits->file, r->column, row + k, lengths[k], offsets[k], bytes, status)
-            || !tf_rice_decode (bytes->data, bytes->len, r->pixel_bytes, r->block, width, stored);
+      *damaged = !unpack (&rows, k, step, line, status);
       if (*damaged)
         return FALSE;
-      to_floats (stored, width, r->scale, r->zero, r->has_blank && in_range, (gint32)r->blank,
-                 line);
     }
   return TRUE;
 }

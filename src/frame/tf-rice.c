@@ -111,6 +111,13 @@ step (Chain *chain, guint32 packed)
   return (gint32)(chain->last << chain->up) >> chain->up;
 }
 
+/* A tile while it is decoded. */
+typedef struct
+{
+  Bits bits;
+  Chain chain;
+} Tile;
+
 /* One coded difference, however near the end: zeros, a one, @low bits. */
 static guint32
 take_coded (Bits *b, guint low)
@@ -119,67 +126,146 @@ take_coded (Bits *b, guint low)
   return high << low | take (b, low);
 }
 
-/* Coded differences with @low < 32 plain bits each. What the next 32 bits and more hold is taken
- * at once; a long run of zeros and the last bytes are left to take_coded. */
-TF_HOT static void
-coded_block (Bits *shared, Chain *chain_shared, guint low, guint n, gint32 *out)
+/* The same when what is held has all of it; FALSE, and nothing taken, when not. */
+static inline gboolean
+take_held (Bits *b, guint low, guint32 *packed)
 {
-  Bits b = *shared;
-  Chain chain = *chain_shared;
-  for (guint k = 0; k < n && !b.over; k++)
-    {
-      if (b.held < 32)
-        refill (&b);
-      guint lead = (guint)__builtin_clzll (b.bits | 1);
-      if (lead + low + 1 > b.held)
-        {
-          *shared = b;
-          guint32 packed = take_coded (shared, low);
-          b = *shared;
-          out[k] = step (&chain, packed);
-          continue;
-        }
-      guint64 rest = b.bits << lead << 1;
-      guint32 packed = lead << low | (guint32)(rest >> 1 >> (63 - low));
-      b.bits = rest << low;
-      b.held -= lead + 1 + low;
-      out[k] = step (&chain, packed);
-    }
-  *shared = b;
-  *chain_shared = chain;
+  if (b->held < 32)
+    refill (b);
+  guint lead = (guint)__builtin_clzll (b->bits | 1);
+  if (lead + low + 1 > b->held)
+    return FALSE;
+  guint64 rest = b->bits << lead << 1;
+  *packed = lead << low | (guint32)(rest >> 1 >> (63 - low));
+  b->bits = rest << low;
+  b->held -= lead + 1 + low;
+  return TRUE;
 }
 
-/* Differences that stand unpacked, @width bits each. */
-static void
-plain_block (Bits *b, Chain *chain, guint width, guint n, gint32 *out)
+/* Coded differences with @low < 32 plain bits each. Copies stay in registers; a long run of zeros
+ * and the last bytes go the slow way. */
+TF_HOT static void
+coded_block (Tile *tile, guint low, guint n, gint32 *out)
 {
-  for (guint k = 0; k < n && !b->over; k++)
-    out[k] = step (chain, take (b, width));
+  Tile t = *tile;
+  for (guint k = 0; k < n && !t.bits.over; k++)
+    {
+      guint32 packed;
+      if (!take_held (&t.bits, low, &packed))
+        {
+          tile->bits = t.bits;
+          packed = take_coded (&tile->bits, low);
+          t.bits = tile->bits;
+        }
+      out[k] = step (&t.chain, packed);
+    }
+  *tile = t;
+}
+
+/* Two tiles in turn: each waits for its own bits, so the processor has twice as much at hand. */
+TF_HOT static void
+coded_blocks (Tile tiles[2], const guint low[2], guint n, gint32 *const out[2])
+{
+  Tile a = tiles[0], b = tiles[1];
+  gint32 *out_a = out[0], *out_b = out[1];
+  guint low_a = low[0], low_b = low[1];
+  for (guint k = 0; k < n && !(a.bits.over | b.bits.over); k++)
+    {
+      guint32 packed_a, packed_b;
+      if (!take_held (&a.bits, low_a, &packed_a))
+        {
+          tiles[0].bits = a.bits;
+          packed_a = take_coded (&tiles[0].bits, low_a);
+          a.bits = tiles[0].bits;
+        }
+      if (!take_held (&b.bits, low_b, &packed_b))
+        {
+          tiles[1].bits = b.bits;
+          packed_b = take_coded (&tiles[1].bits, low_b);
+          b.bits = tiles[1].bits;
+        }
+      out_a[k] = step (&a.chain, packed_a);
+      out_b[k] = step (&b.chain, packed_b);
+    }
+  tiles[0] = a;
+  tiles[1] = b;
+}
+
+/* How a block stands: coded (then @low is how many plain bits), or all alike, or plain. */
+typedef enum
+{
+  BLOCK_ALIKE,
+  BLOCK_CODED,
+  BLOCK_PLAIN
+} BlockKind;
+
+static BlockKind
+take_kind (Bits *b, guint pixel_bytes, guint *low)
+{
+  guint code = take (b, pixel_bytes == 4 ? 5 : pixel_bytes == 2 ? 4 : 3);
+  if (code > (pixel_bytes == 4 ? 25 : pixel_bytes == 2 ? 14 : 6))
+    return BLOCK_PLAIN;
+  *low = MAX (code, 1) - 1;
+  return code > 0 ? BLOCK_CODED : BLOCK_ALIKE;
+}
+
+static void
+any_block (Tile *t, BlockKind kind, guint low, guint n, gint32 *out)
+{
+  gint32 alike = step (&t->chain, 0);
+  if (kind == BLOCK_CODED)
+    coded_block (t, low, n, out);
+  else if (kind == BLOCK_PLAIN)
+    for (guint k = 0; k < n && !t->bits.over; k++)
+      out[k] = step (&t->chain, take (&t->bits, 32 - t->chain.up));
+  else
+    for (guint k = 0; k < n; k++)
+      out[k] = alike;
+}
+
+static Tile
+begin (const guint8 *bytes, gsize n_bytes, guint pixel_bytes)
+{
+  Tile t = { { bytes, bytes + n_bytes, 0, 0, FALSE }, { 0, 32 - 8 * pixel_bytes } };
+  t.chain.last = take (&t.bits, 8 * pixel_bytes);
+  return t;
 }
 
 gboolean
 tf_rice_decode (const guint8 *bytes, gsize n_bytes, guint pixel_bytes, guint block, guint n,
                 gint32 *out)
 {
-  const guint code_bits = pixel_bytes == 4 ? 5 : pixel_bytes == 2 ? 4 : 3;
-  const guint plain_code = pixel_bytes == 4 ? 25 : pixel_bytes == 2 ? 14 : 6;
-  const guint width = 8 * pixel_bytes;
-  Bits b = { bytes, bytes + n_bytes, 0, 0, FALSE };
   g_return_val_if_fail (block > 0, FALSE);
-  Chain chain = { take (&b, width), 32 - width };
-  for (guint k = 0; k < n && !b.over;)
+  Tile t = begin (bytes, n_bytes, pixel_bytes);
+  for (guint k = 0; k < n && !t.bits.over; k += MIN (block, n - k))
     {
-      guint count = MIN (block, n - k), code = take (&b, code_bits);
-      if (b.over)
-        return FALSE;
-      if (code > plain_code)
-        plain_block (&b, &chain, width, count, out + k);
-      else if (code > 0)
-        coded_block (&b, &chain, code - 1, count, out + k);
-      else
-        for (guint j = 0; j < count; j++)
-          out[k + j] = step (&chain, 0);
-      k += count;
+      guint low = 0;
+      BlockKind kind = take_kind (&t.bits, pixel_bytes, &low);
+      any_block (&t, kind, low, MIN (block, n - k), out + k);
     }
-  return !b.over;
+  return !t.bits.over;
+}
+
+gboolean
+tf_rice_decode_two (const guint8 *const bytes[2], const gsize n_bytes[2], guint pixel_bytes,
+                    guint block, guint n, gint32 *const out[2])
+{
+  g_return_val_if_fail (block > 0, FALSE);
+  Tile t[2] = { begin (bytes[0], n_bytes[0], pixel_bytes), begin (bytes[1], n_bytes[1], pixel_bytes) };
+  for (guint k = 0, count; k < n && !(t[0].bits.over | t[1].bits.over); k += count)
+    {
+      guint low[2] = { 0 };
+      BlockKind kind[2] = { take_kind (&t[0].bits, pixel_bytes, &low[0]),
+                            take_kind (&t[1].bits, pixel_bytes, &low[1]) };
+      count = MIN (block, n - k);
+      if (kind[0] == BLOCK_CODED && kind[1] == BLOCK_CODED)
+        {
+          gint32 *const at[2] = { out[0] + k, out[1] + k };
+          coded_blocks (t, low, count, at);
+          continue;
+        }
+      for (guint i = 0; i < 2; i++)
+        any_block (&t[i], kind[i], low[i], count, out[i] + k);
+    }
+  return !(t[0].bits.over | t[1].bits.over);
 }

@@ -69,6 +69,7 @@ main (int argc, char **argv)
   add_picture_tests ();
   add_witness_tests ();
   add_real_tests ();
+  add_rice_tests ();
   add_conformance_tests ();
   int bad = g_test_run ();
   g_autoptr (GDir) dir = g_dir_open (folder, 0, NULL);

@@ -11,6 +11,7 @@ void add_header_tests (void);
 void add_picture_tests (void);
 void add_pixel_tests (void);
 void add_real_tests (void);
+void add_rice_tests (void);
 void add_witness_tests (void);
 void add_write_tests (void);
 
