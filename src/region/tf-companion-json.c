@@ -105,14 +105,18 @@ tf_spots_dup_text (const TfSpots *spots)
       return g_string_free (out, FALSE);
     }
   if (spots->n > 0)
-    g_string_append_printf (out, ngettext ("  %u spot, %.0f millionths of the hemisphere (umbra %.0f)\n",
-                                           "  %u spots, %.0f millionths of the hemisphere (umbra %.0f)\n", spots->n),
-                            spots->n, spots->area_msh, spots->umbra_msh);
+    g_string_append_printf (
+        out,
+        ngettext ("  %u spot, %.0f millionths of the hemisphere (umbra %.0f)\n",
+                  "  %u spots, %.0f millionths of the hemisphere (umbra %.0f)\n", spots->n),
+        spots->n, spots->area_msh, spots->umbra_msh);
   if (spots->leading_polarity == 1 || spots->leading_polarity == -1)
-    g_string_append_printf (out, _ ("  leading spot %s\n"), spots->leading_polarity > 0 ? "+" : "−");
+    g_string_append_printf (out, _ ("  leading spot %s\n"),
+                            spots->leading_polarity > 0 ? "+" : "−");
   if (isfinite (spots->axis_bearing_deg))
-    g_string_append_printf (out, _ ("  spots by area: axis bearing %+.2f°, axis tilt %+.2f°, separation %.2f°\n"), spots->axis_bearing_deg,
-                            spots->axis_tilt_deg, spots->separation_deg);
+    g_string_append_printf (
+        out, _ ("  spots by area: axis bearing %+.2f°, axis tilt %+.2f°, separation %.2f°\n"),
+        spots->axis_bearing_deg, spots->axis_tilt_deg, spots->separation_deg);
   if (spots->delta)
     g_string_append (out, _ ("  delta: umbrae of both polarities in one penumbra\n"));
   for (guint k = 0; k < tf_notes_get_n (spots->notes); k++)

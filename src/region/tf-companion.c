@@ -12,16 +12,21 @@
 #include "tf-fill-private.h"
 #include "tf-measure-private.h"
 
-enum { VIEW_SAMPLES = 24 };
-/* Least share of the field frame's disk that the intensity frame must hold when no outline is given. */
+enum
+{
+  VIEW_SAMPLES = 24
+};
+/* Least share of the field frame's disk that the intensity frame must hold when no outline is
+ * given. */
 static const double HALF = 0.5;
 
 static const char *const limbs[] = { "own", "published", NULL };
 
 #define AT(member) offsetof (TfCompanionParams, member)
 
-/* The two levels: Mathew, Martinez Pillet, Solanki & Krivova 2007, A&A 465, 291 (from memory; continuum near 677 nm). The limits of the
- * match are our choice: in half an hour a region moves a quarter of a degree. */
+/* The two levels: Mathew, Martinez Pillet, Solanki & Krivova 2007, A&A 465, 291 (from memory;
+ * continuum near 677 nm). The limits of the match are our choice: in half an hour a region moves a
+ * quarter of a degree. */
 const TfOption tf_companion_options[] = {
   { "companion-apart", TF_OPTION_NUMBER, "min", 30.0, 0.0, 1440.0, NULL,
     N_ ("most time between a magnetogram and its companion intensity frame"), AT (apart_min) },
@@ -30,16 +35,20 @@ const TfOption tf_companion_options[] = {
   { "companion-cover", TF_OPTION_NUMBER, "", 0.98, 0.1, 1.0, NULL,
     N_ ("least share of the outline that the companion shows"), AT (cover) },
   { "limb-darkening", TF_OPTION_CHOICE, "", TF_LIMB_OWN, 0, 1, limbs,
-    N_ ("own: by the companion's own profile from centre to limb; published: by the law of Allen's Astrophysical Quantities"), AT (limb) },
+    N_ ("own: by the companion's own profile from centre to limb; published: by the law of Allen's "
+        "Astrophysical Quantities"),
+    AT (limb) },
   { "umbra-level", TF_OPTION_NUMBER, "", 0.655, 0.1, 0.95, NULL,
     N_ ("umbra: below this share of the quiet Sun (Mathew and others 2007)"), AT (umbra) },
   { "penumbra-level", TF_OPTION_NUMBER, "", 0.945, 0.2, 0.99, NULL,
     N_ ("spot: below this share of the quiet Sun (Mathew and others 2007)"), AT (penumbra) },
   { "spot-fwhm", TF_OPTION_NUMBER, "Mm", 2.0, 0.5, 20.0, NULL,
     N_ ("width of the Gaussian through which spots are looked for"), AT (spot_fwhm_mm) },
-  { "spot-step", TF_OPTION_NUMBER, "Mm", 1.0, 0.25, 10.0, NULL, N_ ("distance of the nodes on which spots are looked for"), AT (spot_step_mm) },
+  { "spot-step", TF_OPTION_NUMBER, "Mm", 1.0, 0.25, 10.0, NULL,
+    N_ ("distance of the nodes on which spots are looked for"), AT (spot_step_mm) },
   { "spot-smallest", TF_OPTION_NUMBER, "msh", 5.0, 0.0, 1000.0, NULL,
-    N_ ("dark places smaller than this many millionths of the hemisphere are no spots"), AT (smallest_msh) },
+    N_ ("dark places smaller than this many millionths of the hemisphere are no spots"),
+    AT (smallest_msh) },
   { NULL },
 };
 
@@ -62,8 +71,8 @@ static gboolean
 holds (const TfGeometry *g, double lon, double lat)
 {
   double x, y, mu;
-  return tf_geometry_sun_to_pixel (g, lon, lat, &x, &y, &mu) && x >= 0.5 && y >= 0.5 && x <= g->width + 0.5
-         && y <= g->height + 0.5;
+  return tf_geometry_sun_to_pixel (g, lon, lat, &x, &y, &mu) && x >= 0.5 && y >= 0.5
+         && x <= g->width + 0.5 && y <= g->height + 0.5;
 }
 
 typedef struct
@@ -109,7 +118,8 @@ share_of_disk (const TfGeometry *intensity, const TfGeometry *field)
 }
 
 static TfNote *
-find_reason (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOutline *outline, const TfCompanionParams *params)
+find_reason (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOutline *outline,
+             const TfCompanionParams *params)
 {
   if (intensity->role != TF_ROLE_INTENSITY)
     return tf_note_new ("companion-no-intensity", "");
@@ -127,13 +137,14 @@ find_reason (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOut
   double share = outline != NULL ? share_of_outline (&intensity->geometry, outline)
                                  : share_of_disk (&intensity->geometry, &field->geometry);
   if (share < (outline != NULL ? params->cover : HALF))
-    return tf_note_new (outline != NULL ? "companion-view" : "companion-view-disk", "d", 100.0 * share);
+    return tf_note_new (outline != NULL ? "companion-view" : "companion-view-disk", "d",
+                        100.0 * share);
   return NULL;
 }
 
 gboolean
-tf_companion_matches (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOutline *outline,
-                      const TfCompanionParams *params, TfNote **reason)
+tf_companion_matches (const TfFrameInfo *field, const TfFrameInfo *intensity,
+                      const TfOutline *outline, const TfCompanionParams *params, TfNote **reason)
 {
   g_return_val_if_fail (field != NULL && intensity != NULL && params != NULL, FALSE);
   g_autoptr (TfNote) why = find_reason (field, intensity, outline, params);
@@ -144,8 +155,8 @@ tf_companion_matches (const TfFrameInfo *field, const TfFrameInfo *intensity, co
 }
 
 gboolean
-tf_measure_region_with (TfMeasure *m, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *params,
-                        const TfSpots *spots, GError **error)
+tf_measure_region_with (TfMeasure *m, const TfFrame *frame, const TfOutline *outline,
+                        const TfMeasureParams *params, const TfSpots *spots, GError **error)
 {
   g_return_val_if_fail (m != NULL && frame != NULL && outline != NULL && params != NULL, FALSE);
   int witness = spots != NULL && spots->matched ? spots->leading_polarity : TF_WITNESS_ABSENT;

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The figures that are sums over the nodes of the reference grid. Each node stands for step x step Mm2; 1 Mm2 = 1e16 cm2. */
+/* The figures that are sums over the nodes of the reference grid. Each node stands for step x step
+ * Mm2; 1 Mm2 = 1e16 cm2. */
 
 #include <math.h>
 #include <string.h>
@@ -20,7 +21,8 @@ node_flux (const TfTraced *t, gsize k)
   return fabs (t->field[k]) * t->patch->step_mm * t->patch->step_mm * CM2_IN_MM2;
 }
 
-/* Whether a node of that sign with strong field is within one node of (x, y), sides and corners: dilation by 3 x 3. */
+/* Whether a node of that sign with strong field is within one node of (x, y), sides and corners:
+ * dilation by 3 x 3. */
 static gboolean
 touches (const TfTraced *t, guint x, guint y, double sign, double strong)
 {
@@ -36,7 +38,8 @@ touches (const TfTraced *t, guint x, guint y, double sign, double strong)
 }
 
 static void
-convolve (const double *in, double *out, guint width, guint height, gsize across, const double *kernel, int reach)
+convolve (const double *in, double *out, guint width, guint height, gsize across,
+          const double *kernel, int reach)
 {
   guint length = across == 1 ? width : height;
   for (guint y = 0; y < height; y++)
@@ -56,7 +59,8 @@ static void
 spread (double *map, guint width, guint height, double sigma, gboolean peak)
 {
   int reach = (int)ceil (REACH_SIGMAS * sigma);
-  g_autofree double *kernel = g_new (double, 2 * reach + 1), *half = g_new (double, (gsize)width * height);
+  g_autofree double *kernel = g_new (double, 2 * reach + 1),
+                    *half = g_new (double, (gsize)width *height);
   double sum = 0.0;
   for (int d = -reach; d <= reach; d++)
     sum += kernel[d + reach] = exp (-0.5 * d * d / (sigma * sigma));
@@ -66,8 +70,9 @@ spread (double *map, guint width, guint height, double sigma, gboolean peak)
   convolve (half, map, width, height, width, kernel, reach);
 }
 
-/* Schrijver 2007 (from memory): bitmaps of field above +150 and below -150 Mx/cm2, each dilated by a 3 x 3 kernel; their overlap is the
- * strong-gradient polarity separation line; convolved with a Gaussian of FWHM 15 Mm it weighs the unsigned flux. */
+/* Schrijver 2007 (from memory): bitmaps of field above +150 and below -150 Mx/cm2, each dilated by
+ * a 3 x 3 kernel; their overlap is the strong-gradient polarity separation line; convolved with a
+ * Gaussian of FWHM 15 Mm it weighs the unsigned flux. */
 double
 tf_complexity_r (const TfTraced *t, const TfComplexityParams *params)
 {
@@ -78,9 +83,11 @@ tf_complexity_r (const TfTraced *t, const TfComplexityParams *params)
     for (guint x = 0; x < p->width; x++)
       {
         gsize k = (gsize)y * p->width + x;
-        map[k] = t->inside[k] && touches (t, x, y, 1.0, params->strong_gauss) && touches (t, x, y, -1.0, params->strong_gauss);
+        map[k] = t->inside[k] && touches (t, x, y, 1.0, params->strong_gauss)
+                 && touches (t, x, y, -1.0, params->strong_gauss);
       }
-  spread (map, p->width, p->height, params->near_mm / FWHM_SIGMA / p->step_mm, params->r_weight == 1);
+  spread (map, p->width, p->height, params->near_mm / FWHM_SIGMA / p->step_mm,
+          params->r_weight == 1);
   for (gsize k = 0; k < p->n; k++)
     if (t->inside[k])
       sum += map[k] * node_flux (t, k);
@@ -92,11 +99,13 @@ static void
 mark_about (const TfPatch *p, guint8 *marked, double x, double y, double reach)
 {
   double u = (x - p->x0) / p->step_mm, v = (y - p->y0) / p->step_mm;
-  int first_y = MAX (0, (int)ceil (v - reach)), last_y = MIN ((int)p->height - 1, (int)floor (v + reach));
+  int first_y = MAX (0, (int)ceil (v - reach)),
+      last_y = MIN ((int)p->height - 1, (int)floor (v + reach));
   for (int j = first_y; j <= last_y; j++)
     {
       double half = sqrt (MAX (0.0, reach * reach - (j - v) * (j - v)));
-      int first_x = MAX (0, (int)ceil (u - half)), last_x = MIN ((int)p->width - 1, (int)floor (u + half));
+      int first_x = MAX (0, (int)ceil (u - half)),
+          last_x = MIN ((int)p->width - 1, (int)floor (u + half));
       for (int i = first_x; i <= last_x; i++)
         marked[(gsize)j * p->width + (gsize)i] = 1;
     }
@@ -104,14 +113,16 @@ mark_about (const TfPatch *p, guint8 *marked, double x, double y, double reach)
 
 /* Calls for both ends and the middle of every strong-gradient stretch. */
 static void
-mark_strong (const TfTraced *t, const TfInversion *inversion, const TfComplexityParams *params, double reach_mm, guint8 *marked)
+mark_strong (const TfTraced *t, const TfInversion *inversion, const TfComplexityParams *params,
+             double reach_mm, guint8 *marked)
 {
   for (guint k = 0; k < inversion->n; k++)
     for (guint i = 1; i < inversion->lines[k].n; i++)
       {
         const TfInversionPoint *ends = &inversion->lines[k].points[i - 1];
         double unit[3], x[2], y[2];
-        if (!(ends[0].gradient_gauss_mm + ends[1].gradient_gauss_mm >= 2.0 * params->gradient_gauss_mm))
+        if (!(ends[0].gradient_gauss_mm + ends[1].gradient_gauss_mm
+              >= 2.0 * params->gradient_gauss_mm))
           continue;
         for (guint e = 0; e < 2; e++)
           {
@@ -119,13 +130,14 @@ mark_strong (const TfTraced *t, const TfInversion *inversion, const TfComplexity
             tf_patch_plane (t->patch, unit, &x[e], &y[e]);
           }
         for (guint e = 0; e <= 2; e++)
-          mark_about (t->patch, marked, x[0] + 0.5 * e * (x[1] - x[0]), y[0] + 0.5 * e * (y[1] - y[0]),
-                      reach_mm / t->patch->step_mm);
+          mark_about (t->patch, marked, x[0] + 0.5 * e * (x[1] - x[0]),
+                      y[0] + 0.5 * e * (y[1] - y[0]), reach_mm / t->patch->step_mm);
       }
 }
 
 double
-tf_complexity_flux_near (const TfTraced *t, const TfInversion *inversion, const TfComplexityParams *params)
+tf_complexity_flux_near (const TfTraced *t, const TfInversion *inversion,
+                         const TfComplexityParams *params)
 {
   g_autofree guint8 *marked = g_new0 (guint8, t->patch->n);
   double sum = 0.0;
@@ -136,7 +148,7 @@ tf_complexity_flux_near (const TfTraced *t, const TfInversion *inversion, const 
   return sum;
 }
 
-/* -- pieces ------------------------------------------------------------------------------------------------ */
+/* -- pieces ------------------------------------------------------------------------------------ */
 
 static int
 strong_sign (const TfTraced *t, gsize k, double strong)
@@ -196,7 +208,7 @@ tf_complexity_pieces (const TfTraced *t, double strong_gauss, double share)
   return n;
 }
 
-/* -- delta candidate --------------------------------------------------------------------------------------- */
+/* -- delta candidate --------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -209,8 +221,9 @@ lies_within (const TfTraced *t, gsize k, int sign, double core_gauss)
 {
   const TfPatch *p = t->patch;
   guint x = (guint)(k % p->width), y = (guint)(k / p->width);
-  return x > 0 && y > 0 && x + 1 < p->width && y + 1 < p->height && strong_sign (t, k - 1, core_gauss) == sign
-         && strong_sign (t, k + 1, core_gauss) == sign && strong_sign (t, k - p->width, core_gauss) == sign
+  return x > 0 && y > 0 && x + 1 < p->width && y + 1 < p->height
+         && strong_sign (t, k - 1, core_gauss) == sign && strong_sign (t, k + 1, core_gauss) == sign
+         && strong_sign (t, k - p->width, core_gauss) == sign
          && strong_sign (t, k + p->width, core_gauss) == sign;
 }
 
@@ -249,8 +262,9 @@ nearest (const GArray *a, const GArray *b, double radius_mm)
   return 2.0 * radius_mm * asin (MIN (1.0, 0.5 * sqrt (best)));
 }
 
-/* A delta is umbrae of opposite polarity in one penumbra, less than 2 deg apart (Kuenzel 1960, from memory). A magnetogram shows no
- * penumbra: two strong cores that near, on either side of a strong-gradient stretch of line, are a candidate and no more. */
+/* A delta is umbrae of opposite polarity in one penumbra, less than 2 deg apart (Kuenzel 1960, from
+ * memory). A magnetogram shows no penumbra: two strong cores that near, on either side of a
+ * strong-gradient stretch of line, are a candidate and no more. */
 void
 tf_complexity_delta (TfComplexity *c, const TfTraced *t, const TfComplexityParams *params)
 {
@@ -275,7 +289,9 @@ tf_complexity_delta (TfComplexity *c, const TfTraced *t, const TfComplexityParam
   double distance = nearest (plus_near, minus_near, radius);
   c->delta_candidate = distance < reach;
   if (c->delta_candidate)
-    c->delta_reason = tf_note_new ("delta-candidate", "ddd", params->core_gauss, distance, c->max_gradient_gauss_mm);
+    c->delta_reason = tf_note_new ("delta-candidate", "ddd", params->core_gauss, distance,
+                                   c->max_gradient_gauss_mm);
   else
-    c->delta_reason = tf_note_new ("delta-gentle", "dd", c->delta_distance_mm, params->gradient_gauss_mm);
+    c->delta_reason
+        = tf_note_new ("delta-gentle", "dd", c->delta_distance_mm, params->gradient_gauss_mm);
 }

@@ -9,7 +9,8 @@
 #include "tf-json.h"
 
 void
-tf_complexity_build_json (const TfComplexity *c, const TfComplexityParams *params, JsonBuilder *builder)
+tf_complexity_build_json (const TfComplexity *c, const TfComplexityParams *params,
+                          JsonBuilder *builder)
 {
   if (!c->given)
     {
@@ -45,7 +46,8 @@ tf_complexity_build_json (const TfComplexity *c, const TfComplexityParams *param
 }
 
 void
-tf_complexity_build_members (const TfComplexity *c, const TfComplexityParams *params, JsonBuilder *builder)
+tf_complexity_build_members (const TfComplexity *c, const TfComplexityParams *params,
+                             JsonBuilder *builder)
 {
   json_builder_set_member_name (builder, "complexity");
   if (c != NULL)
@@ -72,18 +74,23 @@ tf_complexity_dup_text (const TfComplexity *c)
       add_note (out, c->refusal);
       return g_string_free (out, FALSE);
     }
-  g_string_append_printf (out, _ ("  complexity at %.1f Mm (nodes %.1f Mm apart): inversion lines %.0f Mm, strong field %.0f Mm, "
-                                  "strong gradient %.0f Mm, gradient-weighted %.3g G\n"),
-                          c->fwhm_mm, c->step_mm, c->length_mm, c->strong_field_length_mm, c->strong_gradient_length_mm,
-                          c->gradient_weighted_gauss);
+  g_string_append_printf (out,
+                          _ ("  complexity at %.1f Mm (nodes %.1f Mm apart): inversion lines %.0f "
+                             "Mm, strong field %.0f Mm, "
+                             "strong gradient %.0f Mm, gradient-weighted %.3g G\n"),
+                          c->fwhm_mm, c->step_mm, c->length_mm, c->strong_field_length_mm,
+                          c->strong_gradient_length_mm, c->gradient_weighted_gauss);
   if (c->inversion.n > 0)
     g_string_append_printf (out, _ ("  steepest gradient %.0f G/Mm\n"), c->max_gradient_gauss_mm);
   if (c->r_mx > 0.0)
-    g_string_append_printf (out, _ ("  Schrijver's R %.3g Mx (log %.2f), flux near strong gradients %.3g Mx, strong pieces %u\n"), c->r_mx,
-                            c->r_log10, c->flux_near_mx, c->pieces);
+    g_string_append_printf (out,
+                            _ ("  Schrijver's R %.3g Mx (log %.2f), flux near strong gradients "
+                               "%.3g Mx, strong pieces %u\n"),
+                            c->r_mx, c->r_log10, c->flux_near_mx, c->pieces);
   else
-    g_string_append_printf (out, _ ("  Schrijver's R 0 Mx, flux near strong gradients %.3g Mx, strong pieces %u\n"), c->flux_near_mx,
-                            c->pieces);
+    g_string_append_printf (
+        out, _ ("  Schrijver's R 0 Mx, flux near strong gradients %.3g Mx, strong pieces %u\n"),
+        c->flux_near_mx, c->pieces);
   add_note (out, c->delta_reason);
   for (guint k = 0; k < tf_notes_get_n (c->notes); k++)
     add_note (out, tf_notes_get (c->notes, k));

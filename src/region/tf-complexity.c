@@ -49,7 +49,8 @@ set_nothing (TfComplexity *c, const TfMeasureParams *measure, const TfComplexity
 
 /* Why the figures are not given, or NULL. */
 static TfNote *
-find_refusal (TfComplexity *c, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params)
+find_refusal (TfComplexity *c, const TfFrame *frame, const TfOutline *outline,
+              const TfComplexityParams *params)
 {
   const TfGeometry *g = tf_frame_get_geometry (frame);
   double lon, lat, radius, x, y, mu;
@@ -84,7 +85,8 @@ add_cautions (TfComplexity *c, const TfTraced *t, const TfComplexityParams *para
   if (p->coarse > SHARE_SAID)
     tf_notes_add (c->notes, "complexity-coarse", "d", params->fwhm_mm);
   if (unseen > SHARE_SAID * (double)(inside + unseen))
-    tf_notes_add (c->notes, "complexity-missing-data", "d", 100.0 * (double)unseen / (double)(inside + unseen));
+    tf_notes_add (c->notes, "complexity-missing-data", "d",
+                  100.0 * (double)unseen / (double)(inside + unseen));
 }
 
 static void
@@ -93,24 +95,26 @@ set_lines (TfComplexity *c, const TfTraced *t, const TfComplexityParams *params)
   double radius = t->patch->radius_mm;
   tf_inversion_trace (&c->inversion, t, params);
   c->length_mm = tf_inversion_length (&c->inversion);
-  tf_inversion_sum (&c->inversion, radius, 0.0, params->transverse_gauss, &c->strong_field_length_mm,
-                    &c->gradient_weighted_gauss);
-  tf_inversion_sum (&c->inversion, radius, params->gradient_gauss_mm, params->transverse_gauss, &c->strong_gradient_length_mm,
-                    NULL);
+  tf_inversion_sum (&c->inversion, radius, 0.0, params->transverse_gauss,
+                    &c->strong_field_length_mm, &c->gradient_weighted_gauss);
+  tf_inversion_sum (&c->inversion, radius, params->gradient_gauss_mm, params->transverse_gauss,
+                    &c->strong_gradient_length_mm, NULL);
   for (guint k = 0; k < c->inversion.n; k++)
-    c->max_gradient_gauss_mm = fmax (c->max_gradient_gauss_mm, c->inversion.lines[k].max_gradient_gauss_mm);
+    c->max_gradient_gauss_mm
+        = fmax (c->max_gradient_gauss_mm, c->inversion.lines[k].max_gradient_gauss_mm);
 }
 
-/* R is a sum over a few nodes beside a line: where the nodes happen to stand matters. So it is the mean over four grids that
- * stand half a step apart. */
+/* R is a sum over a few nodes beside a line: where the nodes happen to stand matters. So it is the
+ * mean over four grids that stand half a step apart. */
 static void
-set_r (TfComplexity *c, const TfTraced *first, const TfFrame *frame, const TfOutline *here, const TfMeasureParams *measure,
-       const TfComplexityParams *params)
+set_r (TfComplexity *c, const TfTraced *first, const TfFrame *frame, const TfOutline *here,
+       const TfMeasureParams *measure, const TfComplexityParams *params)
 {
   double sum = tf_complexity_r (first, params);
   for (guint k = 1; k < 4; k++)
     {
-      g_autoptr (TfTraced) t = tf_traced_new (frame, here, measure, params, 0.5 * (k % 2), 0.5 * (k / 2), FALSE);
+      g_autoptr (TfTraced) t
+          = tf_traced_new (frame, here, measure, params, 0.5 * (k % 2), 0.5 * (k / 2), FALSE);
       sum += tf_complexity_r (t, params);
     }
   c->r_mx = 0.25 * sum;
@@ -127,10 +131,11 @@ has_inside (const TfTraced *t)
 }
 
 void
-tf_complexity_region (TfComplexity *c, const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *measure,
-                      const TfComplexityParams *params)
+tf_complexity_region (TfComplexity *c, const TfFrame *frame, const TfOutline *outline,
+                      const TfMeasureParams *measure, const TfComplexityParams *params)
 {
-  g_return_if_fail (c != NULL && frame != NULL && outline != NULL && measure != NULL && params != NULL);
+  g_return_if_fail (c != NULL && frame != NULL && outline != NULL && measure != NULL
+                    && params != NULL);
   set_nothing (c, measure, params);
   g_autoptr (TfOutline) here = tf_mask_outline (frame, outline, (guint)measure->law);
   c->refusal = find_refusal (c, frame, here, params);

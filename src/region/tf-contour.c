@@ -5,8 +5,8 @@
 
 #include <string.h>
 
-/* Edges are numbered: from node k to the right 2 k, upwards 2 k + 1. Every edge that a line crosses has at most one edge after it and
- * one before it. */
+/* Edges are numbered: from node k to the right 2 k, upwards 2 k + 1. Every edge that a line crosses
+ * has at most one edge after it and one before it. */
 typedef struct
 {
   const double *values;
@@ -16,14 +16,16 @@ typedef struct
   gint32 *next, *before; /* edge -> edge, or -1 */
 } Tracer;
 
-/* Pairs of sides (0 low, 1 right, 2 high, 3 left) that a line joins, by the code of the corners that are above: lower left 1,
- * lower right 2, upper right 4, upper left 8. Saddles with a high middle stand at 5 and 10, with a low one at 16 and 17. */
+/* Pairs of sides (0 low, 1 right, 2 high, 3 left) that a line joins, by the code of the corners
+ * that are above: lower left 1, lower right 2, upper right 4, upper left 8. Saddles with a high
+ * middle stand at 5 and 10, with a low one at 16 and 17. */
 static const gint8 joins[18][4] = {
-  [0] = { -1, -1, -1, -1 }, [1] = { 0, 3, -1, -1 },   [2] = { 1, 0, -1, -1 },   [3] = { 1, 3, -1, -1 },
-  [4] = { 2, 1, -1, -1 },   [5] = { 0, 1, 2, 3 },     [6] = { 2, 0, -1, -1 },   [7] = { 2, 3, -1, -1 },
-  [8] = { 3, 2, -1, -1 },   [9] = { 0, 2, -1, -1 },   [10] = { 3, 0, 1, 2 },    [11] = { 1, 2, -1, -1 },
-  [12] = { 3, 1, -1, -1 },  [13] = { 0, 1, -1, -1 },  [14] = { 3, 0, -1, -1 },  [15] = { -1, -1, -1, -1 },
-  [16] = { 0, 3, 2, 1 },    [17] = { 1, 0, 3, 2 },
+  [0] = { -1, -1, -1, -1 },  [1] = { 0, 3, -1, -1 },  [2] = { 1, 0, -1, -1 },
+  [3] = { 1, 3, -1, -1 },    [4] = { 2, 1, -1, -1 },  [5] = { 0, 1, 2, 3 },
+  [6] = { 2, 0, -1, -1 },    [7] = { 2, 3, -1, -1 },  [8] = { 3, 2, -1, -1 },
+  [9] = { 0, 2, -1, -1 },    [10] = { 3, 0, 1, 2 },   [11] = { 1, 2, -1, -1 },
+  [12] = { 3, 1, -1, -1 },   [13] = { 0, 1, -1, -1 }, [14] = { 3, 0, -1, -1 },
+  [15] = { -1, -1, -1, -1 }, [16] = { 0, 3, 2, 1 },   [17] = { 1, 0, 3, 2 },
 };
 
 static guint

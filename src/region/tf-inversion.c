@@ -26,7 +26,8 @@ tf_inversion_copy (TfInversion *to, const TfInversion *from)
   to->n = from->n;
   to->lines = g_memdup2 (from->lines, from->n * sizeof *from->lines);
   for (guint k = 0; k < to->n; k++)
-    to->lines[k].points = g_memdup2 (from->lines[k].points, from->lines[k].n * sizeof *from->lines[k].points);
+    to->lines[k].points
+        = g_memdup2 (from->lines[k].points, from->lines[k].n * sizeof *from->lines[k].points);
 }
 
 double
@@ -45,8 +46,8 @@ stretch_mm (const TfInversionPoint *a, const TfInversionPoint *b, double radius_
 }
 
 void
-tf_inversion_sum (const TfInversion *inversion, double radius_mm, double least_gradient, double least_transverse,
-                  double *length_mm, double *weighted_gauss)
+tf_inversion_sum (const TfInversion *inversion, double radius_mm, double least_gradient,
+                  double least_transverse, double *length_mm, double *weighted_gauss)
 {
   double length = 0.0, weighted = 0.0;
   for (guint k = 0; k < inversion->n; k++)
@@ -54,7 +55,8 @@ tf_inversion_sum (const TfInversion *inversion, double radius_mm, double least_g
       {
         const TfInversionPoint *a = &inversion->lines[k].points[i - 1], *b = a + 1;
         double gradient = 0.5 * (a->gradient_gauss_mm + b->gradient_gauss_mm);
-        if (!(gradient >= least_gradient) || !(0.5 * (a->transverse_gauss + b->transverse_gauss) >= least_transverse))
+        if (!(gradient >= least_gradient)
+            || !(0.5 * (a->transverse_gauss + b->transverse_gauss) >= least_transverse))
           continue;
         double d = stretch_mm (a, b, radius_mm);
         length += d;
@@ -66,7 +68,7 @@ tf_inversion_sum (const TfInversion *inversion, double radius_mm, double least_g
     *weighted_gauss = weighted;
 }
 
-/* -- tracing ----------------------------------------------------------------------------------------------- */
+/* -- tracing ----------------------------------------------------------------------------------- */
 
 typedef struct
 {
@@ -82,7 +84,8 @@ reaches (const Judge *judge, double x, double y, double cos_a, double sin_a, int
   double step = t->patch->step_mm;
   for (double s = step; s <= judge->params->side_mm + 1e-9; s += step)
     {
-      double field = sign * tf_patch_at (t->patch, t->field, x + sign * s * cos_a, y + sign * s * sin_a);
+      double field
+          = sign * tf_patch_at (t->patch, t->field, x + sign * s * cos_a, y + sign * s * sin_a);
       if (field >= judge->params->strong_gauss)
         return TRUE;
       if (!(field > 0.0))
@@ -91,7 +94,8 @@ reaches (const Judge *judge, double x, double y, double cos_a, double sin_a, int
   return FALSE;
 }
 
-/* A point of the zero line in plane coordinates: FALSE when it is not a part of an inversion line of the region. */
+/* A point of the zero line in plane coordinates: FALSE when it is not a part of an inversion line
+ * of the region. */
 static gboolean
 judge_point (const Judge *judge, double x, double y, TfInversionPoint *point)
 {
@@ -103,11 +107,13 @@ judge_point (const Judge *judge, double x, double y, TfInversionPoint *point)
   double size = hypot (gx, gy);
   if (!(size > 0.0))
     return FALSE;
-  if (!reaches (judge, x, y, gx / size, gy / size, 1) || !reaches (judge, x, y, gx / size, gy / size, -1))
+  if (!reaches (judge, x, y, gx / size, gy / size, 1)
+      || !reaches (judge, x, y, gx / size, gy / size, -1))
     return FALSE;
   tf_sphere_lonlat (unit, &point->lon_deg, &point->lat_deg);
   point->gradient_gauss_mm = size;
-  point->transverse_gauss = t->transverse != NULL ? tf_patch_at (t->patch, t->transverse, x, y) : 0.0;
+  point->transverse_gauss
+      = t->transverse != NULL ? tf_patch_at (t->patch, t->transverse, x, y) : 0.0;
   return TRUE;
 }
 
@@ -135,13 +141,14 @@ finish_line (GArray *lines, GArray *points, double radius_mm)
     }
   const TfInversionPoint *last = &line.points[line.n - 1];
   line.closed = line.n > 3 && stretch_mm (line.points, last, radius_mm) < 1e-9;
-  line.mean_gradient_gauss_mm = line.length_mm > 0.0 ? weighted / line.length_mm : line.max_gradient_gauss_mm;
+  line.mean_gradient_gauss_mm
+      = line.length_mm > 0.0 ? weighted / line.length_mm : line.max_gradient_gauss_mm;
   g_array_append_val (lines, line);
   g_array_set_size (points, 0);
 }
 
-/* The parts of one contour that are inversion lines. A closed contour that is not one throughout is begun after a gap, so that no part
- * is cut where the contour happens to begin. */
+/* The parts of one contour that are inversion lines. A closed contour that is not one throughout is
+ * begun after a gap, so that no part is cut where the contour happens to begin. */
 static void
 split_contour (GArray *lines, const Judge *judge, const GArray *contour)
 {
@@ -152,7 +159,8 @@ split_contour (GArray *lines, const Judge *judge, const GArray *contour)
   g_autofree gboolean *kept = g_new (gboolean, n);
   g_autoptr (GArray) run = g_array_new (FALSE, FALSE, sizeof (TfInversionPoint));
   for (guint i = 0; i < n; i++)
-    kept[i] = judge_point (judge, p->x0 + p->step_mm * at[i].x, p->y0 + p->step_mm * at[i].y, &points[i]);
+    kept[i] = judge_point (judge, p->x0 + p->step_mm * at[i].x, p->y0 + p->step_mm * at[i].y,
+                           &points[i]);
   gboolean loop = n > 3 && hypot (at[0].x - at[n - 1].x, at[0].y - at[n - 1].y) < 1e-12;
   while (loop && first < n && kept[first])
     first++;
@@ -179,7 +187,8 @@ by_length (gconstpointer a, gconstpointer b)
 }
 
 void
-tf_inversion_trace (TfInversion *inversion, const TfTraced *traced, const TfComplexityParams *params)
+tf_inversion_trace (TfInversion *inversion, const TfTraced *traced,
+                    const TfComplexityParams *params)
 {
   Judge judge = { traced, params };
   const TfPatch *p = traced->patch;
@@ -192,7 +201,7 @@ tf_inversion_trace (TfInversion *inversion, const TfTraced *traced, const TfComp
   inversion->lines = (TfInversionLine *)(void *)g_array_free (lines, FALSE);
 }
 
-/* -- JSON -------------------------------------------------------------------------------------------------- */
+/* -- JSON -------------------------------------------------------------------------------------- */
 
 static void
 build_line (const TfInversionLine *line, JsonBuilder *builder)

@@ -3,8 +3,9 @@
  */
 #pragma once
 
-/* TfLimbShape: the quiet Sun's intensity in the frame's own units: a polynomial in mu times 1 + a slope across the disk (real frames have
- * some per cent of it, from their flat fields). Immutable, a plain value. */
+/* TfLimbShape: the quiet Sun's intensity in the frame's own units: a polynomial in mu times 1 + a
+ * slope across the disk (real frames have some per cent of it, from their flat fields). Immutable,
+ * a plain value. */
 
 #include "tf-companion.h"
 
@@ -12,7 +13,8 @@ G_BEGIN_DECLS
 
 enum
 {
-  TF_LIMB_DEGREE = 5 /* of the own profile on a disk, as Neckel & Labs 1994, Solar Physics 153, 91 use (from memory) */
+  /* of the own profile on a disk, as Neckel & Labs 1994, Solar Physics 153, 91 (from memory) */
+  TF_LIMB_DEGREE = 5
 };
 
 typedef struct
@@ -25,8 +27,9 @@ typedef struct
   double scatter;               /* rms of the places taken for quiet, about 1 */
 } TfLimbShape;
 
-/** tf_limb_shape_fit: medians of rings of mu, spots and faculae thrown out, and a polynomial through them; a narrow range of mu gets fewer
- * terms, a very narrow one the published law. FALSE when the frame has no values on the disk. */
+/** tf_limb_shape_fit: medians of rings of mu, spots and faculae thrown out, and a polynomial
+ * through them; a narrow range of mu gets fewer terms, a very narrow one the published law. FALSE
+ * when the frame has no values on the disk. */
 gboolean tf_limb_shape_fit (TfLimbShape *shape, const TfFrame *intensity, TfLimbMethod method);
 /** tf_limb_shape_at: of mu alone; tf_limb_shape_quiet: with the slope, at FITS pixel (x, y). */
 double tf_limb_shape_at (const TfLimbShape *shape, double mu);

@@ -25,7 +25,7 @@ typedef struct
 {
   GArray *rings[RINGS]; /* float: values without the slope */
   guint n;
-  double square;        /* mean square of what is left, about 1 */
+  double square;             /* mean square of what is left, about 1 */
   double xx, xy, yy, xr, yr; /* sums for the slope: places and what is left */
 } Profile;
 
@@ -42,11 +42,13 @@ double
 tf_limb_shape_quiet (const TfLimbShape *shape, double mu, double x, double y)
 {
   return tf_limb_shape_at (shape, mu)
-         * (1.0 + (shape->slope[0] * (x - shape->centre[0]) + shape->slope[1] * (y - shape->centre[1])) / shape->radius);
+         * (1.0
+            + (shape->slope[0] * (x - shape->centre[0]) + shape->slope[1] * (y - shape->centre[1]))
+                  / shape->radius);
 }
 
-/* I(mu) / I(1) = 1 - u - v + u mu + v mu^2 with u = 0.93, v = -0.23 at 550 nm: Cox 2000, Allen's Astrophysical Quantities, section 14.7 (from
- * memory). */
+/* I(mu) / I(1) = 1 - u - v + u mu + v mu^2 with u = 0.93, v = -0.23 at 550 nm: Cox 2000, Allen's
+ * Astrophysical Quantities, section 14.7 (from memory). */
 double
 tf_limb_published (double mu)
 {
@@ -86,7 +88,8 @@ profile_empty (Profile *profile)
 
 /* A value at a pixel; after the first round only when it is near the shape. */
 static void
-profile_add (Profile *p, const TfLimbShape *shape, gboolean first, double mu, double x, double y, double value)
+profile_add (Profile *p, const TfLimbShape *shape, gboolean first, double mu, double x, double y,
+             double value)
 {
   double u = (x - shape->centre[0]) / shape->radius, v = (y - shape->centre[1]) / shape->radius;
   double slope = 1.0 + shape->slope[0] * u + shape->slope[1] * v;
@@ -127,13 +130,15 @@ collect (Profile *profile, const TfFrame *frame, const TfLimbShape *shape, gbool
     for (guint x = 0; x < w; x++)
       {
         float value = pixels[(gsize)y * w + x];
-        double px = x * side + 0.5 * (side + 1.0), py = y * side + 0.5 * (side + 1.0), mu = tf_geometry_mu (g, px, py);
+        double px = x * side + 0.5 * (side + 1.0), py = y * side + 0.5 * (side + 1.0),
+               mu = tf_geometry_mu (g, px, py);
         if (mu >= LEAST_MU && isfinite (value) && value > 0.0f)
           profile_add (profile, shape, first, mu, px, py, value);
       }
 }
 
-/* Normal equations of sum c_k mu^k = value, weighted, by elimination with pivots; FALSE when singular. */
+/* Normal equations of sum c_k mu^k = value, weighted, by elimination with pivots; FALSE when
+ * singular. */
 static gboolean
 solve (double a[TF_LIMB_DEGREE + 1][TF_LIMB_DEGREE + 2], guint n)
 {
@@ -227,10 +232,14 @@ static void
 fit (TfLimbShape *shape, const Medians *m, TfLimbMethod method)
 {
   double range = m->mu[m->n - 1] - m->mu[0];
-  guint degree = range >= WIDE && m->n > 2 * TF_LIMB_DEGREE ? TF_LIMB_DEGREE : range >= NARROW && m->n > 5 ? 2 : 0;
+  guint degree = range >= WIDE && m->n > 2 * TF_LIMB_DEGREE ? TF_LIMB_DEGREE
+                 : range >= NARROW && m->n > 5              ? 2
+                                                            : 0;
   shape->mu_low = m->mu[0];
   shape->mu_high = m->mu[m->n - 1];
-  shape->method = method == TF_LIMB_OWN && degree > 0 && fit_polynomial (shape, m, degree) ? TF_LIMB_OWN : TF_LIMB_PUBLISHED;
+  shape->method = method == TF_LIMB_OWN && degree > 0 && fit_polynomial (shape, m, degree)
+                      ? TF_LIMB_OWN
+                      : TF_LIMB_PUBLISHED;
   if (shape->method == TF_LIMB_PUBLISHED)
     fit_published (shape, m);
 }

@@ -9,7 +9,8 @@
 
 /* The kernel is cut here, in its own sigmas. */
 static const double REACH_SIGMAS = 3.6;
-/* Least variance of the kernel, pixel^2: below it a sum over pixels is no longer a smooth function of the place. */
+/* Least variance of the kernel, pixel^2: below it a sum over pixels is no longer a smooth function
+ * of the place. */
 static const double LEAST_VARIANCE = 0.2;
 /* A node is seen when at least this share of its kernel has values. */
 static const double LEAST_SHARE = 0.5;
@@ -72,7 +73,8 @@ tf_patch_at (const TfPatch *p, const double *values, double x, double y)
   guint i = MIN ((guint)u, p->width - 2), j = MIN ((guint)v, p->height - 2);
   double a = u - i, b = v - j;
   const double *at = values + (gsize)j * p->width + i;
-  return (1.0 - b) * ((1.0 - a) * at[0] + a * at[1]) + b * ((1.0 - a) * at[p->width] + a * at[p->width + 1]);
+  return (1.0 - b) * ((1.0 - a) * at[0] + a * at[1])
+         + b * ((1.0 - a) * at[p->width] + a * at[p->width + 1]);
 }
 
 static void
@@ -99,10 +101,12 @@ static void
 choose_level (Level *level, const TfFrame *frame, double sigma_mm)
 {
   const TfGeometry *g = tf_frame_get_geometry (frame);
-  double pixel = tf_geometry_is_map (g) ? (double)INFINITY
-                                        : tf_geometry_scale_arcsec (g) * TF_ARCSEC * (g->distance_mm - g->radius_mm);
+  double pixel = tf_geometry_is_map (g)
+                     ? (double)INFINITY
+                     : tf_geometry_scale_arcsec (g) * TF_ARCSEC * (g->distance_mm - g->radius_mm);
   guint at = 0, w, h;
-  while (pixel * (2 << at) <= LEVEL_SHARE * sigma_mm && tf_frame_get_level (frame, at + 1, &w, &h) != NULL)
+  while (pixel * (2 << at) <= LEVEL_SHARE * sigma_mm
+         && tf_frame_get_level (frame, at + 1, &w, &h) != NULL)
     at++;
   level->level = at;
   level->pixels = tf_frame_get_level (frame, at, &level->width, &level->height);
@@ -150,7 +154,8 @@ static void
 place_nodes (TfPatch *p, const TfFrame *frame, const Level *level)
 {
   const TfGeometry *g = tf_frame_get_geometry (frame);
-  gboolean map = tf_geometry_is_map (g), radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL;
+  gboolean map = tf_geometry_is_map (g),
+           radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL;
   for (gsize k = 0; k < p->n; k++)
     {
       double x, y, unit[3], lon, lat, px, py, mu = 1.0;
@@ -168,7 +173,8 @@ place_nodes (TfPatch *p, const TfFrame *frame, const Level *level)
     }
 }
 
-/* Derivative along the row (@across = 1) or the column (@across = width), one-sided at the edges. */
+/* Derivative along the row (@across = 1) or the column (@across = width), one-sided at the edges.
+ * */
 static double
 difference (const double *values, gsize k, guint at, guint n, gsize across, double step)
 {
@@ -200,16 +206,20 @@ typedef struct
 } Sums;
 
 static void
-sum_kernel (Sums *sums, const Level *level, double u, double v, const Tensor *inverse, double reach_x, double reach_y)
+sum_kernel (Sums *sums, const Level *level, double u, double v, const Tensor *inverse,
+            double reach_x, double reach_y)
 {
-  int first_x = MAX (0, (int)ceil (u - reach_x)), last_x = MIN ((int)level->width - 1, (int)floor (u + reach_x));
-  int first_y = MAX (0, (int)ceil (v - reach_y)), last_y = MIN ((int)level->height - 1, (int)floor (v + reach_y));
+  int first_x = MAX (0, (int)ceil (u - reach_x)),
+      last_x = MIN ((int)level->width - 1, (int)floor (u + reach_x));
+  int first_y = MAX (0, (int)ceil (v - reach_y)),
+      last_y = MIN ((int)level->height - 1, (int)floor (v + reach_y));
   for (int y = first_y; y <= last_y; y++)
     for (int x = first_x; x <= last_x; x++)
       {
         double f = level->pixels[(gsize)y * level->width + (gsize)x];
         double a = x - u, b = y - v;
-        double depth = 0.5 * (inverse->xx * a * a + 2.0 * inverse->xy * a * b + inverse->yy * b * b);
+        double depth
+            = 0.5 * (inverse->xx * a * a + 2.0 * inverse->xy * a * b + inverse->yy * b * b);
         if (!isfinite (f) || depth > 0.5 * REACH_SIGMAS * REACH_SIGMAS)
           continue;
         double w = exp (-depth);
@@ -229,13 +239,15 @@ typedef struct
   gboolean coarse;
 } Seen;
 
-/* J: derivative of the level's place by the plane's. The kernel's variance in pixels is J sigma^2 J^T less the 1/12 that the
- * pixels have already. The value's derivative is exact: that of the weighted mean. */
+/* J: derivative of the level's place by the plane's. The kernel's variance in pixels is J sigma^2
+ * J^T less the 1/12 that the pixels have already. The value's derivative is exact: that of the
+ * weighted mean. */
 static gboolean
 look (Seen *seen, const Level *level, double u, double v, const double j[2][2], double sigma)
 {
   double s2 = sigma * sigma;
-  Tensor c = { s2 * (j[0][0] * j[0][0] + j[0][1] * j[0][1]) - 1.0 / 12.0, s2 * (j[0][0] * j[1][0] + j[0][1] * j[1][1]),
+  Tensor c = { s2 * (j[0][0] * j[0][0] + j[0][1] * j[0][1]) - 1.0 / 12.0,
+               s2 * (j[0][0] * j[1][0] + j[0][1] * j[1][1]),
                s2 * (j[1][0] * j[1][0] + j[1][1] * j[1][1]) - 1.0 / 12.0 };
   seen->coarse = lift (&c, LEAST_VARIANCE);
   double det = c.xx * c.yy - c.xy * c.xy;
@@ -276,10 +288,12 @@ tf_patch_look (const TfPatch *p, double x, double y, double *value, double *dx, 
   Seen seen;
   if (isnan (u) || isnan (v))
     return FALSE;
-  guint column = (guint)((x - p->x0) / p->step_mm + 0.5), row = (guint)((y - p->y0) / p->step_mm + 0.5);
+  guint column = (guint)((x - p->x0) / p->step_mm + 0.5),
+        row = (guint)((y - p->y0) / p->step_mm + 0.5);
   find_jacobian (p, (gsize)row * p->width + column, j);
   level.pixels = tf_frame_get_level (p->frame, p->level, &level.width, &level.height);
-  if (!is_whole ((const double (*)[2])j, u, v) || !look (&seen, &level, u, v, (const double (*)[2])j, p->sigma_mm))
+  if (!is_whole ((const double (*)[2])j, u, v)
+      || !look (&seen, &level, u, v, (const double (*)[2])j, p->sigma_mm))
     return FALSE;
   *value = seen.value;
   *dx = j[0][0] * seen.du + j[1][0] * seen.dv;

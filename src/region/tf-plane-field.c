@@ -10,15 +10,18 @@
 #include "tf-plane-field-private.h"
 
 /* Corrections for the changing direction end here. */
-enum { MOST_STEPS = 16 };
+enum
+{
+  MOST_STEPS = 16
+};
 static const double LEFT_ENOUGH = 1e-3;
 /* And where a step takes less than this away: very wide boxes, which no plane fits. */
 static const double SLOW = 0.85;
 
 typedef struct
 {
-  guint width, height;   /* padded */
-  guint half;            /* columns of the transform: width / 2 + 1 */
+  guint width, height; /* padded */
+  guint half;          /* columns of the transform: width / 2 + 1 */
   double step;
   double *real;
   fftw_complex *spectrum;
@@ -51,7 +54,8 @@ box_clear (Box *box)
   fftw_free (box->spectrum);
 }
 
-/* FFTW's planner is the only part of it that is not thread safe: its own lock is switched on (again and again does no harm). */
+/* FFTW's planner is the only part of it that is not thread safe: its own lock is switched on (again
+ * and again does no harm). */
 static gboolean
 box_open (Box *box, guint width, guint height, double step)
 {
@@ -80,14 +84,15 @@ wave (const Box *box, guint row, guint column, double *kx, double *ky)
   *ky = 2.0 * TF_PI * j / (box->height * box->step);
 }
 
-/* A complex number as two reals: the language's own product and quotient look for infinities at every step. */
+/* A complex number as two reals: the language's own product and quotient look for infinities at
+ * every step. */
 typedef struct
 {
   double re, im;
 } Wave;
 
-/* Adds to @phi (and at k = 0 to Bz itself) the potential of the field in box->real as seen along @n: with a = nz |k| and
- * b = nx kx + ny ky, seen / (a - i b) = seen (a + i b) / (a^2 + b^2). */
+/* Adds to @phi (and at k = 0 to Bz itself) the potential of the field in box->real as seen along
+ * @n: with a = nz |k| and b = nx kx + ny ky, seen / (a - i b) = seen (a + i b) / (a^2 + b^2). */
 static void
 add_potential (Box *box, const double n[3], Wave *phi)
 {
@@ -100,7 +105,8 @@ add_potential (Box *box, const double n[3], Wave *phi)
         double kx, ky;
         wave (box, row, column, &kx, &ky);
         double a = at == 0 ? n[2] : n[2] * sqrt (kx * kx + ky * ky), b = n[0] * kx + n[1] * ky;
-        double re = box->spectrum[at][0] / count, im = box->spectrum[at][1] / count, size = a * a + b * b;
+        double re = box->spectrum[at][0] / count, im = box->spectrum[at][1] / count,
+               size = a * a + b * b;
         phi[at].re += (re * a - im * b) / size;
         phi[at].im += (re * b + im * a) / size;
       }
@@ -115,7 +121,8 @@ typedef enum
   PART_Z_DY
 } Part;
 
-/* One component of the field over the whole box, into box->real: phi times a real or an imaginary number. */
+/* One component of the field over the whole box, into box->real: phi times a real or an imaginary
+ * number. */
 static void
 make_part (Box *box, const Wave *phi, Part part)
 {
@@ -126,7 +133,10 @@ make_part (Box *box, const Wave *phi, Part part)
         double kx, ky;
         wave (box, row, column, &kx, &ky);
         double k = sqrt (kx * kx + ky * ky);
-        double imaginary = part == PART_X ? -kx : part == PART_Y ? -ky : part == PART_Z_DX ? kx * k : ky * k;
+        double imaginary = part == PART_X      ? -kx
+                           : part == PART_Y    ? -ky
+                           : part == PART_Z_DX ? kx * k
+                                               : ky * k;
         box->spectrum[at][0] = part == PART_Z ? k * phi[at].re : -imaginary * phi[at].im;
         box->spectrum[at][1] = part == PART_Z ? k * phi[at].im : imaginary * phi[at].re;
       }
@@ -166,8 +176,8 @@ make_field (TfPlaneField *field, Box *box, const Wave *phi)
 
 /* What is still unexplained at each node; its rms as a share of the field's. */
 static double
-find_rest (const TfPlaneField *field, const double *seen, const double (*line)[3], const guint8 *use, const double n[3],
-           double *rest)
+find_rest (const TfPlaneField *field, const double *seen, const double (*line)[3],
+           const guint8 *use, const double n[3], double *rest)
 {
   double left = 0.0, all = 0.0;
   for (gsize k = 0; k < (gsize)field->width * field->height; k++)
@@ -197,8 +207,8 @@ mean_line (guint width, guint height, const double (*line)[3], const guint8 *use
 
 /* Newest corrections are kept only while they help. */
 static void
-correct (TfPlaneField *field, Box *box, const double *seen, const double (*line)[3], const guint8 *use, const double n[3],
-         Wave *phi)
+correct (TfPlaneField *field, Box *box, const double *seen, const double (*line)[3],
+         const guint8 *use, const double n[3], Wave *phi)
 {
   gsize size = (gsize)box->half * box->height;
   g_autofree double *rest = g_new (double, (gsize)field->width * field->height);
@@ -226,13 +236,15 @@ correct (TfPlaneField *field, Box *box, const double *seen, const double (*line)
 }
 
 TfPlaneField *
-tf_plane_field_new (guint width, guint height, double step, const double *seen, const double (*line)[3], const guint8 *use)
+tf_plane_field_new (guint width, guint height, double step, const double *seen,
+                    const double (*line)[3], const guint8 *use)
 {
   g_return_val_if_fail (width > 0 && height > 0 && step > 0.0, NULL);
   g_auto (Box) box = { 0 };
   double n[3] = { 0.0, 0.0, 1.0 };
   gsize count = (gsize)width * height;
-  if ((line != NULL && !mean_line (width, height, line, use, n)) || !box_open (&box, width, height, step))
+  if ((line != NULL && !mean_line (width, height, line, use, n))
+      || !box_open (&box, width, height, step))
     return NULL;
   TfPlaneField *field = g_new0 (TfPlaneField, 1);
   field->width = width;

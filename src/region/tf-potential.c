@@ -10,7 +10,10 @@
 #include "tf-plane-field-private.h"
 
 /* Nodes a side, at most: a wider box has coarser steps. */
-enum { MOST_NODES = 512 };
+enum
+{
+  MOST_NODES = 512
+};
 /* Where the Sun is seen at a grazing angle nothing is added. */
 static const double LEAST_MU = 0.1;
 
@@ -46,11 +49,13 @@ TfPotential *
 tf_potential_new (const TfFrame *frame, const TfOutline *outline, double step_mm, double margin_mm)
 {
   g_return_val_if_fail (frame != NULL && outline != NULL && step_mm > 0.0, NULL);
-  if (tf_geometry_is_map (tf_frame_get_geometry (frame)) || tf_frame_get_info (frame)->field == TF_FIELD_RADIAL)
+  if (tf_geometry_is_map (tf_frame_get_geometry (frame))
+      || tf_frame_get_info (frame)->field == TF_FIELD_RADIAL)
     return NULL;
   g_autoptr (TfPatch) patch = make_patch (frame, outline, step_mm, margin_mm);
-  g_autoptr (TfPlaneField) field = tf_plane_field_new (patch->width, patch->height, patch->step_mm, patch->value,
-                                                       (const double (*)[3])patch->line, patch->seen);
+  g_autoptr (TfPlaneField) field
+      = tf_plane_field_new (patch->width, patch->height, patch->step_mm, patch->value,
+                            (const double (*)[3])patch->line, patch->seen);
   if (field == NULL)
     return NULL;
   TfPotential *p = g_atomic_rc_box_new0 (TfPotential);

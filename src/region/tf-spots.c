@@ -13,19 +13,22 @@
 /* A delta's umbrae are nearer than this, deg (Kuenzel 1960, from memory). */
 static const double DELTA_DEG = 2.0;
 /* Fewer quiet nodes about the outline than this are too few. */
-enum { LEAST_QUIET = 50 };
+enum
+{
+  LEAST_QUIET = 50
+};
 /* Opposite polarity that a lone spot is compared with, G. */
 static const double WEAK_GAUSS = 150.0;
 
 typedef struct
 {
-  const TfTraced *field;   /* of the magnetogram, on the same nodes */
-  TfPatch *patch;          /* of the intensity */
-  double *level;           /* intensity over the quiet Sun's; 1 where not seen */
-  gint32 *spot;            /* number of the spot a node belongs to; -1 none, -2 one too small */
+  const TfTraced *field; /* of the magnetogram, on the same nodes */
+  TfPatch *patch;        /* of the intensity */
+  double *level;         /* intensity over the quiet Sun's; 1 where not seen */
+  gint32 *spot;          /* number of the spot a node belongs to; -1 none, -2 one too small */
   guint8 *umbra;
-  double msh;              /* of a node */
-  GArray *found;           /* TfSpot, by number */
+  double msh;    /* of a node */
+  GArray *found; /* TfSpot, by number */
 } Sight;
 
 /* Sums over nodes of one kind. */
@@ -66,10 +69,11 @@ tally_add (Tally *tally, const Sight *s, gsize k, double weight)
     tally->sum[i] += weight * unit[i];
 }
 
-/* The nodes connected with @start, by sides and corners, for which @kind is not 0, become @nodes and get number @number in @numbers, where
- * they had -1. */
+/* The nodes connected with @start, by sides and corners, for which @kind is not 0, become @nodes
+ * and get number @number in @numbers, where they had -1. */
 static void
-flood (const Sight *s, const guint8 *kind, gint32 *numbers, gsize start, gint32 number, GArray *nodes)
+flood (const Sight *s, const guint8 *kind, gint32 *numbers, gsize start, gint32 number,
+       GArray *nodes)
 {
   const TfPatch *p = s->patch;
   g_array_set_size (nodes, 0);
@@ -91,7 +95,7 @@ flood (const Sight *s, const guint8 *kind, gint32 *numbers, gsize start, gint32 
     }
 }
 
-/* -- umbrae of one spot ------------------------------------------------------------------------------------ */
+/* -- umbrae of one spot ------------------------------------------------------------------------ */
 
 static gboolean
 is_near (const Sight *s, gsize a, gsize b)
@@ -112,7 +116,10 @@ has_delta (const Sight *s, const GArray *dark, const gint32 *umbrae, const GArra
     for (guint j = i + 1; j < dark->len; j++)
       {
         gsize a = g_array_index (dark, gsize, i), b = g_array_index (dark, gsize, j);
-        if (g_array_index (tallies, Tally, umbrae[a]).field * g_array_index (tallies, Tally, umbrae[b]).field < 0.0 && is_near (s, a, b))
+        if (g_array_index (tallies, Tally, umbrae[a]).field
+                    * g_array_index (tallies, Tally, umbrae[b]).field
+                < 0.0
+            && is_near (s, a, b))
           return TRUE;
       }
   return FALSE;
@@ -190,7 +197,7 @@ find_spots (Sight *s, const TfCompanionParams *params)
     }
 }
 
-/* -- what the spots tell ----------------------------------------------------------------------------------- */
+/* -- what the spots tell ----------------------------------------------------------------------- */
 
 /* Places of a delta spot go by their own sign, all others by their spot's. */
 static void
@@ -240,7 +247,8 @@ flux_longitude (const Sight *s, int sign)
   return lon;
 }
 
-/* The western of the largest spots of the two polarities leads; a lone polarity is compared with the other's flux. */
+/* The western of the largest spots of the two polarities leads; a lone polarity is compared with
+ * the other's flux. */
 static int
 find_leader (const Sight *s)
 {
@@ -250,12 +258,14 @@ find_leader (const Sight *s)
     return TF_WITNESS_ABSENT;
   for (guint k = 0; k < s->found->len; k++)
     {
-      const TfSpot *spot = &g_array_index (s->found, TfSpot, k), **best = &largest[spot->polarity > 0 ? TF_POSITIVE : TF_NEGATIVE];
+      const TfSpot *spot = &g_array_index (s->found, TfSpot, k),
+                   **best = &largest[spot->polarity > 0 ? TF_POSITIVE : TF_NEGATIVE];
       if (*best == NULL || spot->area_msh > (*best)->area_msh)
         *best = spot;
     }
   for (guint i = 0; i < 2; i++)
-    lon[i] = largest[i] != NULL ? largest[i]->lon_deg : flux_longitude (s, i == TF_POSITIVE ? 1 : -1);
+    lon[i]
+        = largest[i] != NULL ? largest[i]->lon_deg : flux_longitude (s, i == TF_POSITIVE ? 1 : -1);
   double west = tf_wrap_180 (lon[TF_POSITIVE] - lon[TF_NEGATIVE]);
   return isnan (west) ? 0 : (west > 0.0) - (west < 0.0);
 }
@@ -264,7 +274,8 @@ static void
 add_contours (GArray *out, const Sight *s, double level, gboolean umbra)
 {
   const TfPatch *p = s->patch;
-  g_autoptr (GPtrArray) lines = tf_contours (s->level, s->field->inside, p->width, p->height, level);
+  g_autoptr (GPtrArray) lines
+      = tf_contours (s->level, s->field->inside, p->width, p->height, level);
   for (guint k = 0; k < lines->len; k++)
     {
       const GArray *line = lines->pdata[k];
@@ -320,7 +331,7 @@ by_area (gconstpointer a, gconstpointer b)
   return (x < y) - (x > y);
 }
 
-/* -- the whole --------------------------------------------------------------------------------------------- */
+/* -- the whole --------------------------------------------------------------------------------- */
 
 static void
 sight_clear (Sight *s)
@@ -334,7 +345,8 @@ sight_clear (Sight *s)
 
 /* The intensity on the very nodes of the field's patch. */
 static void
-sight_open (Sight *s, const TfTraced *field, const TfFrame *intensity, const TfLimbShape *shape, const TfPatchSpec *spec)
+sight_open (Sight *s, const TfTraced *field, const TfFrame *intensity, const TfLimbShape *shape,
+            const TfPatchSpec *spec)
 {
   s->field = field;
   s->patch = tf_patch_new (intensity, spec);
@@ -343,13 +355,17 @@ sight_open (Sight *s, const TfTraced *field, const TfFrame *intensity, const TfL
   s->spot = g_new (gint32, n);
   s->umbra = g_new0 (guint8, n);
   s->found = g_array_new (FALSE, TRUE, sizeof (TfSpot));
-  s->msh = 1e6 * spec->step_mm * spec->step_mm / (2.0 * TF_PI * s->patch->radius_mm * s->patch->radius_mm);
+  s->msh = 1e6 * spec->step_mm * spec->step_mm
+           / (2.0 * TF_PI * s->patch->radius_mm * s->patch->radius_mm);
   memset (s->spot, 0xff, n * sizeof *s->spot);
   double side = 1 << s->patch->level;
   for (gsize k = 0; k < n; k++)
     {
-      double x = s->patch->u[k] * side + 0.5 * (side + 1.0), y = s->patch->v[k] * side + 0.5 * (side + 1.0);
-      s->level[k] = s->patch->seen[k] ? s->patch->value[k] / tf_limb_shape_quiet (shape, s->patch->mu[k], x, y) : 1.0;
+      double x = s->patch->u[k] * side + 0.5 * (side + 1.0),
+             y = s->patch->v[k] * side + 0.5 * (side + 1.0);
+      s->level[k] = s->patch->seen[k]
+                        ? s->patch->value[k] / tf_limb_shape_quiet (shape, s->patch->mu[k], x, y)
+                        : 1.0;
     }
 }
 
@@ -360,7 +376,8 @@ by_number (gconstpointer a, gconstpointer b)
   return (x > y) - (x < y);
 }
 
-/* Flat fields of real frames leave some per cent after limb darkening: the median about the outline becomes 1. */
+/* Flat fields of real frames leave some per cent after limb darkening: the median about the outline
+ * becomes 1. */
 static double
 level_out (Sight *s)
 {
@@ -385,13 +402,15 @@ set_nothing (TfSpots *spots)
   memset (spots, 0, sizeof *spots);
   spots->notes = tf_notes_new ();
   spots->leading_polarity = TF_WITNESS_ABSENT;
-  spots->leading_lon_deg = spots->leading_lat_deg = spots->following_lon_deg = spots->following_lat_deg = NAN;
-  spots->axis_bearing_deg = spots->axis_tilt_deg = spots->separation_deg = spots->quiet_scatter = spots->quiet_here = NAN;
+  spots->leading_lon_deg = spots->leading_lat_deg = spots->following_lon_deg
+      = spots->following_lat_deg = NAN;
+  spots->axis_bearing_deg = spots->axis_tilt_deg = spots->separation_deg = spots->quiet_scatter
+      = spots->quiet_here = NAN;
 }
 
 static void
-look (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, const TfOutline *here, const TfMeasureParams *measure,
-      const TfCompanionParams *params, const TfLimbShape *shape)
+look (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, const TfOutline *here,
+      const TfMeasureParams *measure, const TfCompanionParams *params, const TfLimbShape *shape)
 {
   TfComplexityParams grid;
   TfPatchSpec spec;
@@ -413,14 +432,17 @@ look (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, const TfOu
 }
 
 void
-tf_spots_find (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, const TfOutline *outline,
-               const TfMeasureParams *measure, const TfCompanionParams *params)
+tf_spots_find (TfSpots *spots, const TfFrame *field, const TfFrame *intensity,
+               const TfOutline *outline, const TfMeasureParams *measure,
+               const TfCompanionParams *params)
 {
-  g_return_if_fail (spots != NULL && field != NULL && intensity != NULL && outline != NULL && measure != NULL && params != NULL);
+  g_return_if_fail (spots != NULL && field != NULL && intensity != NULL && outline != NULL
+                    && measure != NULL && params != NULL);
   set_nothing (spots);
   TfLimbShape shape;
   g_autoptr (TfOutline) here = tf_mask_outline (field, outline, (guint)measure->law);
-  spots->matched = tf_companion_matches (tf_frame_get_info (field), tf_frame_get_info (intensity), here, params, &spots->refusal);
+  spots->matched = tf_companion_matches (tf_frame_get_info (field), tf_frame_get_info (intensity),
+                                         here, params, &spots->refusal);
   if (!spots->matched)
     return;
   if (!tf_limb_shape_fit (&shape, intensity, (TfLimbMethod)params->limb))
@@ -434,4 +456,3 @@ tf_spots_find (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, c
   spots->quiet_scatter = shape.scatter;
   look (spots, field, intensity, here, measure, params, &shape);
 }
-

@@ -8,16 +8,22 @@
 #include "tf-measure-private.h"
 #include "tf-plane-field-private.h"
 
-enum { MOST_NODES = 1200 };
+enum
+{
+  MOST_NODES = 1200
+};
 /* About the outline's box, so that a potential field and a smoothing have their surroundings. */
 static const double MARGIN_MM = 30.0;
 
 void
-tf_traced_spec (TfPatchSpec *spec, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params, double shift_x,
-                double shift_y)
+tf_traced_spec (TfPatchSpec *spec, const TfFrame *frame, const TfOutline *outline,
+                const TfComplexityParams *params, double shift_x, double shift_y)
 {
   double radius;
-  *spec = (TfPatchSpec){ .step_mm = params->step_mm, .fwhm_mm = params->fwhm_mm, .shift_x = shift_x, .shift_y = shift_y,
+  *spec = (TfPatchSpec){ .step_mm = params->step_mm,
+                         .fwhm_mm = params->fwhm_mm,
+                         .shift_x = shift_x,
+                         .shift_y = shift_y,
                          .most_nodes = MOST_NODES };
   tf_outline_get_cap (outline, &spec->lon_deg, &spec->lat_deg, &radius);
   spec->half_x_mm = spec->half_y_mm
@@ -76,19 +82,22 @@ take_transverse (TfTraced *t, const TfPlaneField *plane, double scale)
     t->transverse[k] = scale * hypot (plane->bx[k], plane->by[k]);
 }
 
-/* The potential field's foot is what the observer sees (potential field used) or the field used itself, standing upright. */
+/* The potential field's foot is what the observer sees (potential field used) or the field used
+ * itself, standing upright. */
 static void
 make_fields (TfTraced *t, const TfFrame *frame, const TfMeasureParams *measure, gboolean full)
 {
   const TfPatch *p = t->patch;
-  gboolean flat = tf_geometry_is_map (tf_frame_get_geometry (frame)) || tf_frame_get_info (frame)->field == TF_FIELD_RADIAL;
+  gboolean flat = tf_geometry_is_map (tf_frame_get_geometry (frame))
+                  || tf_frame_get_info (frame)->field == TF_FIELD_RADIAL;
   gboolean potential = measure->field_used == TF_FIELD_USED_POTENTIAL && !flat;
   g_autoptr (TfPlaneField) plane = NULL;
   t->scale = tf_region_scale (measure);
   t->divides = measure->field_used != TF_FIELD_USED_OBSERVED && !flat;
   take_field (t);
   if (potential)
-    plane = tf_plane_field_new (p->width, p->height, p->step_mm, p->value, (const double (*)[3])p->line, p->seen);
+    plane = tf_plane_field_new (p->width, p->height, p->step_mm, p->value,
+                                (const double (*)[3])p->line, p->seen);
   if (plane != NULL)
     take_potential (t, plane);
   if (!full)
@@ -117,8 +126,8 @@ find_inside (TfTraced *t, double mu_min)
 }
 
 TfTraced *
-tf_traced_new (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *measure, const TfComplexityParams *params,
-               double shift_x, double shift_y, gboolean full)
+tf_traced_new (const TfFrame *frame, const TfOutline *outline, const TfMeasureParams *measure,
+               const TfComplexityParams *params, double shift_x, double shift_y, gboolean full)
 {
   TfTraced *t = g_new0 (TfTraced, 1);
   TfPatchSpec spec;

@@ -26,7 +26,7 @@ TfFrame *
 builder_frame_func (const BuilderFrame *how, BuilderFunc func, gconstpointer data)
 {
   TfGeometry g = builder_geometry (how);
-  g_autofree float *field = g_new (float, (gsize)g.width * g.height);
+  g_autofree float *field = g_new (float, (gsize)g.width *g.height);
   double (*unit)[3] = g_malloc_n (g.width, sizeof *unit);
   g_autofree double *row = g_new (double, g.width);
   guint fine = how->fine;
@@ -35,7 +35,8 @@ builder_frame_func (const BuilderFrame *how, BuilderFunc func, gconstpointer dat
       memset (row, 0, g.width * sizeof *row);
       for (guint k = 0; k < fine * fine; k++)
         {
-          tf_geometry_row_sun (&g, y + 0.5 + (k / fine + 0.5) / fine, 0.5 + (k % fine + 0.5) / fine, g.width, unit, NULL, NULL);
+          tf_geometry_row_sun (&g, y + 0.5 + (k / fine + 0.5) / fine, 0.5 + (k % fine + 0.5) / fine,
+                               g.width, unit, NULL, NULL);
           for (guint x = 0; x < g.width; x++)
             {
               double to_observer[3];
@@ -53,7 +54,8 @@ builder_frame_func (const BuilderFrame *how, BuilderFunc func, gconstpointer dat
 }
 
 void
-builder_complexity (TfComplexity *c, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params)
+builder_complexity (TfComplexity *c, const TfFrame *frame, const TfOutline *outline,
+                    const TfComplexityParams *params)
 {
   TfMeasureParams measure;
   tf_measure_params_init (&measure);

@@ -8,16 +8,18 @@
 #include "region-builder.h"
 #include "tf-complexity.h"
 
-/* Field at a place, G. @to_observer: unit vector, Carrington frame. A function that gives the radial field is turned into that of the line of
- * sight by the caller's own mu. */
-typedef double (*BuilderFunc) (const double unit[3], const double to_observer[3], gconstpointer data);
+/* Field at a place, G. @to_observer: unit vector, Carrington frame. A function that gives the
+ * radial field is turned into that of the line of sight by the caller's own mu. */
+typedef double (*BuilderFunc) (const double unit[3], const double to_observer[3],
+                               gconstpointer data);
 
 /** builder_frame_func: each pixel is the mean over how->fine x how->fine places; noise by how. */
 TfFrame *builder_frame_func (const BuilderFrame *how, BuilderFunc func, gconstpointer data);
 /** builder_to_observer: unit vector from a place of the Sun towards the frame's observer. */
 void builder_to_observer (const TfGeometry *g, const double unit[3], double to_observer[3]);
 /** builder_complexity: measured with default options but for @params. */
-void builder_complexity (TfComplexity *c, const TfFrame *frame, const TfOutline *outline, const TfComplexityParams *params);
+void builder_complexity (TfComplexity *c, const TfFrame *frame, const TfOutline *outline,
+                         const TfComplexityParams *params);
 
 void add_inversion_tests (void);
 void add_complexity_tests (void);

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Companion intensity frames: pairs made here from known spots, one real pair of headers, one real intensity frame. */
+/* Companion intensity frames: pairs made here from known spots, one real pair of headers, one real
+ * intensity frame. */
 
 #include <string.h>
 
@@ -12,21 +13,24 @@
 #include "tf-json.h"
 #include "tf-limb-shape-private.h"
 
-enum { MOST_SPOTS = 6 };
+enum
+{
+  MOST_SPOTS = 6
+};
 
 /* A round spot: umbra to one radius, penumbra to another, with sharp edges. */
 typedef struct
 {
-  double lon, lat;            /* from central meridian */
+  double lon, lat; /* from central meridian */
   double umbra_deg, penumbra_deg;
-  double field;               /* G in the umbra; half of it in the penumbra; upright */
+  double field; /* G in the umbra; half of it in the penumbra; upright */
 } Spot;
 
 typedef struct
 {
   guint n;
   Spot spots[MOST_SPOTS];
-  double limb[3];             /* quiet Sun: limb[0] + limb[1] mu + limb[2] mu^2 */
+  double limb[3]; /* quiet Sun: limb[0] + limb[1] mu + limb[2] mu^2 */
 } Scene;
 
 /* 0 quiet, 1 penumbra, 2 umbra. */
@@ -69,7 +73,8 @@ brightness (const double unit[3], const double to_observer[3], gconstpointer dat
   const Scene *scene = data;
   const Spot *spot = NULL;
   double mu = mu_of (unit, to_observer);
-  return 5e4 * levels[kind_at (scene, unit, &spot)] * (scene->limb[0] + mu * (scene->limb[1] + mu * scene->limb[2]));
+  return 5e4 * levels[kind_at (scene, unit, &spot)]
+         * (scene->limb[0] + mu * (scene->limb[1] + mu * scene->limb[2]));
 }
 
 static double
@@ -109,10 +114,13 @@ find (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, const TfOu
   tf_spots_find (spots, field, intensity, outline, &measure, &params);
 }
 
-/* -- limb darkening -------------------------------------------------------------------------------------------- */
+/* -- limb darkening ---------------------------------------------------------------------------- */
 
-static const Scene disk_scene = { 4, { { 20.0, 10.0, 0.8, 1.8, 2000.0 }, { 14.0, 12.0, 0.7, 1.5, -2000.0 }, { -60.0, -12.0, 1.0, 2.5, 2000.0 },
-                                       { -35.0, 25.0, 0.8, 2.0, 2000.0 } },
+static const Scene disk_scene = { 4,
+                                  { { 20.0, 10.0, 0.8, 1.8, 2000.0 },
+                                    { 14.0, 12.0, 0.7, 1.5, -2000.0 },
+                                    { -60.0, -12.0, 1.0, 2.5, 2000.0 },
+                                    { -35.0, 25.0, 0.8, 2.0, 2000.0 } },
                                   { 0.38, 0.82, -0.20 } };
 
 static void
@@ -129,7 +137,9 @@ test_own_profile (void)
   g_assert_true (tf_limb_shape_fit (&shape, intensity, TF_LIMB_OWN));
   g_assert_cmpint (shape.method, ==, TF_LIMB_OWN);
   for (double mu = 0.2; mu <= 1.0; mu += 0.1)
-    tf_check_near ("profile over the truth", tf_limb_shape_at (&shape, mu) / (5e4 * (0.38 + mu * (0.82 - 0.20 * mu))), 1.0, 0.003);
+    tf_check_near ("profile over the truth",
+                   tf_limb_shape_at (&shape, mu) / (5e4 * (0.38 + mu * (0.82 - 0.20 * mu))), 1.0,
+                   0.003);
   tf_check_between ("scatter about it", shape.scatter, 0.005, 0.02);
   tf_check_near ("no slope along x", shape.slope[0], 0.0, 0.001);
   tf_check_near ("no slope along y", shape.slope[1], 0.0, 0.001);
@@ -148,23 +158,28 @@ test_slope (void)
   g_autoptr (TfFrame) bright = builder_frame_func (&how, brightness, &disk_scene);
   const TfGeometry *g = tf_frame_get_geometry (bright);
   guint w = tf_frame_get_width (bright), h = tf_frame_get_height (bright);
-  g_autofree float *pixels = g_memdup2 (tf_frame_get_pixels (bright), (gsize)w * h * sizeof (float));
+  g_autofree float *pixels
+      = g_memdup2 (tf_frame_get_pixels (bright), (gsize)w * h * sizeof (float));
   g_assert_true (tf_geometry_disk_centre (g, &cx, &cy));
   for (guint y = 0; y < h; y++)
     for (guint x = 0; x < w; x++)
-      pixels[(gsize)y * w + x] *= (float)(1.0 + (0.06 * (x + 1.0 - cx) - 0.03 * (y + 1.0 - cy)) / tf_geometry_disk_radius (g));
+      pixels[(gsize)y * w + x] *= (float)(1.0
+                                          + (0.06 * (x + 1.0 - cx) - 0.03 * (y + 1.0 - cy))
+                                                / tf_geometry_disk_radius (g));
   g_autoptr (TfFrame) aslant = builder_frame_of (g, &how, pixels);
   g_autoptr (TfFrame) intensity = as_intensity (aslant, 0.0);
   g_assert_true (tf_limb_shape_fit (&shape, intensity, TF_LIMB_OWN));
   tf_check_near ("slope along x", shape.slope[0], 0.06, 0.001);
   tf_check_near ("slope along y", shape.slope[1], -0.03, 0.001);
-  tf_check_near ("profile at mu 0.5 over the truth", tf_limb_shape_at (&shape, 0.5) / (5e4 * (0.38 + 0.41 - 0.05)), 1.0, 0.003);
+  tf_check_near ("profile at mu 0.5 over the truth",
+                 tf_limb_shape_at (&shape, 0.5) / (5e4 * (0.38 + 0.41 - 0.05)), 1.0, 0.003);
 }
 
 static void
 test_published_law (void)
 {
-  /* Cox 2000 prints I(0.5) / I(1) and the like for 550 nm; from memory: 0.71 at mu = 0.5, 0.30 at 0 */
+  /* Cox 2000 prints I(0.5) / I(1) and the like for 550 nm; from memory: 0.71 at mu = 0.5, 0.30 at 0
+   * */
   tf_check_near ("at the centre", tf_limb_published (1.0), 1.0, 1e-12);
   tf_check_near ("at mu 0.5", tf_limb_published (0.5), 0.7075, 1e-9);
   tf_check_near ("at the limb", tf_limb_published (0.0), 0.30, 1e-9);
@@ -186,18 +201,22 @@ test_real_profile (void)
   g_assert_true (tf_limb_shape_fit (&shape, intensity, TF_LIMB_OWN));
   g_assert_cmpint (shape.method, ==, TF_LIMB_OWN);
   double ratio = tf_limb_shape_at (&shape, 0.5) / tf_limb_shape_at (&shape, 1.0);
-  g_test_message ("real intensity: I (0.5) / I (1) %.3f, I (0.3) / I (1) %.3f, scatter of the quiet Sun %.4f", ratio,
-                  tf_limb_shape_at (&shape, 0.3) / tf_limb_shape_at (&shape, 1.0), shape.scatter);
-  /* between the published values at 550 and 850 nm; near 677 nm: about 0.76 (Neckel & Labs 1994, from memory) */
+  g_test_message (
+      "real intensity: I (0.5) / I (1) %.3f, I (0.3) / I (1) %.3f, scatter of the quiet Sun %.4f",
+      ratio, tf_limb_shape_at (&shape, 0.3) / tf_limb_shape_at (&shape, 1.0), shape.scatter);
+  /* between the published values at 550 and 850 nm; near 677 nm: about 0.76 (Neckel & Labs 1994,
+   * from memory) */
   tf_check_between ("half way to the limb over the centre", ratio, 0.71, 0.82);
-  /* the frame's flat field leaves patches of +- 5 %, which tf_spots_find levels out about each outline */
+  /* the frame's flat field leaves patches of +- 5 %, which tf_spots_find levels out about each
+   * outline */
   tf_check_between ("scatter of the quiet Sun", shape.scatter, 0.0, 0.04);
 }
 
-/* -- matching --------------------------------------------------------------------------------------------------- */
+/* -- matching ---------------------------------------------------------------------------------- */
 
 static void
-check_match (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOutline *outline, const char *code)
+check_match (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOutline *outline,
+             const char *code)
 {
   TfCompanionParams params;
   g_autoptr (TfNote) reason = NULL;
@@ -236,8 +255,8 @@ test_matching (void)
   tf_frame_unref (intensity);
 }
 
-/* A real intensity header and a real magnetogram of the same instrument and day: hours apart they do not match; with the intensity's time
- * set to the magnetogram's they do. */
+/* A real intensity header and a real magnetogram of the same instrument and day: hours apart they
+ * do not match; with the intensity's time set to the magnetogram's they do. */
 static void
 test_real_headers (void)
 {
@@ -269,10 +288,11 @@ test_real_headers (void)
   check_match (f, moved, NULL, NULL);
 }
 
-/* -- spots ------------------------------------------------------------------------------------------------------- */
+/* -- spots ------------------------------------------------------------------------------------- */
 
-/* Millionths of the hemisphere of a cap whose edge was seen through the Gaussian of 2 Mm: a level that is not half way between the two sides of
- * the edge lies outside it by that many sigmas of 0.849 Mm. */
+/* Millionths of the hemisphere of a cap whose edge was seen through the Gaussian of 2 Mm: a level
+ * that is not half way between the two sides of the edge lies outside it by that many sigmas of
+ * 0.849 Mm. */
 static double
 cap_msh (double radius_deg, double sigmas)
 {
@@ -286,7 +306,9 @@ static void
 check_two_spots (double lon, double lat, double scale_arcsec, double half_deg)
 {
   /* not the published limb darkening, so that a cut-out needs its quiet Sun levelled */
-  const Scene scene = { 2, { { lon + 2.6, lat - 0.7, 0.75, 1.6, 2200.0 }, { lon - 2.6, lat + 0.7, 0.5, 1.1, -1800.0 } },
+  const Scene scene = { 2,
+                        { { lon + 2.6, lat - 0.7, 0.75, 1.6, 2200.0 },
+                          { lon - 2.6, lat + 0.7, 0.5, 1.1, -1800.0 } },
                         { 0.38, 0.82, -0.20 } };
   BuilderFrame how;
   TfFrame *field, *intensity;
@@ -300,10 +322,13 @@ check_two_spots (double lon, double lat, double scale_arcsec, double half_deg)
   find (&spots, field, intensity, outline);
   g_assert_true (spots.matched);
   g_assert_cmpuint (spots.n, ==, 2);
-  tf_tilt (scene.spots[0].lon, scene.spots[0].lat, scene.spots[1].lon, scene.spots[1].lat, FALSE, &bearing, &tilt);
-  g_test_message ("%.1f arcsec at (%.0f, %.0f): areas %.0f and %.0f of %.0f and %.0f msh, umbrae %.0f and %.0f of %.0f and %.0f, bearing %.2f of "
-                  "%.2f, separation %.3f", scale_arcsec, lon, lat, spots.spots[0].area_msh, spots.spots[1].area_msh, cap_msh (1.6, PENUMBRA_SIGMAS),
-                  cap_msh (1.1, PENUMBRA_SIGMAS),
+  tf_tilt (scene.spots[0].lon, scene.spots[0].lat, scene.spots[1].lon, scene.spots[1].lat, FALSE,
+           &bearing, &tilt);
+  g_test_message ("%.1f arcsec at (%.0f, %.0f): areas %.0f and %.0f of %.0f and %.0f msh, umbrae "
+                  "%.0f and %.0f of %.0f and %.0f, bearing %.2f of "
+                  "%.2f, separation %.3f",
+                  scale_arcsec, lon, lat, spots.spots[0].area_msh, spots.spots[1].area_msh,
+                  cap_msh (1.6, PENUMBRA_SIGMAS), cap_msh (1.1, PENUMBRA_SIGMAS),
                   spots.spots[0].umbra_msh, spots.spots[1].umbra_msh, cap_msh (0.75, UMBRA_SIGMAS),
                   cap_msh (0.5, UMBRA_SIGMAS), spots.axis_bearing_deg, bearing,
                   spots.separation_deg);
@@ -311,9 +336,14 @@ check_two_spots (double lon, double lat, double scale_arcsec, double half_deg)
     {
       const TfSpot *spot = &spots.spots[k];
       const Spot *truth = &scene.spots[k];
-      tf_check_near ("spot's place, deg", tf_sphere_distance (spot->lon_deg, spot->lat_deg, BUILDER_L0 + truth->lon, truth->lat), 0.0, 0.05);
-      tf_check_near ("spot's area", spot->area_msh / cap_msh (truth->penumbra_deg, PENUMBRA_SIGMAS), 1.0, 0.04);
-      tf_check_near ("umbra's area", spot->umbra_msh / cap_msh (truth->umbra_deg, UMBRA_SIGMAS), 1.0, 0.06);
+      tf_check_near (
+          "spot's place, deg",
+          tf_sphere_distance (spot->lon_deg, spot->lat_deg, BUILDER_L0 + truth->lon, truth->lat),
+          0.0, 0.05);
+      tf_check_near ("spot's area", spot->area_msh / cap_msh (truth->penumbra_deg, PENUMBRA_SIGMAS),
+                     1.0, 0.04);
+      tf_check_near ("umbra's area", spot->umbra_msh / cap_msh (truth->umbra_deg, UMBRA_SIGMAS),
+                     1.0, 0.06);
       g_assert_cmpint (spot->polarity, ==, k == 0 ? 1 : -1);
       g_assert_cmpuint (spot->umbrae, ==, 1);
       g_assert_false (spot->delta);
@@ -327,8 +357,10 @@ check_two_spots (double lon, double lat, double scale_arcsec, double half_deg)
       const TfSpotContour *c = &spots.contours[k];
       umbrae += c->umbra;
       g_assert_cmpuint (c->n, >, 8);
-      tf_check_near ("a contour closes, deg", tf_sphere_distance (c->points[0].lon_deg, c->points[0].lat_deg, c->points[c->n - 1].lon_deg,
-                                                                  c->points[c->n - 1].lat_deg), 0.0, 1e-9);
+      tf_check_near ("a contour closes, deg",
+                     tf_sphere_distance (c->points[0].lon_deg, c->points[0].lat_deg,
+                                         c->points[c->n - 1].lon_deg, c->points[c->n - 1].lat_deg),
+                     0.0, 1e-9);
     }
   g_assert_cmpuint (umbrae, ==, 2);
   g_assert_cmpuint (spots.n_contours, ==, 4);
@@ -344,12 +376,14 @@ test_two_spots (void)
   check_two_spots (45.0, 8.0, 2.0, 9.0);
 }
 
-/* -- delta ------------------------------------------------------------------------------------------------------- */
+/* -- delta ------------------------------------------------------------------------------------- */
 
 static void
 check_delta (double apart, double penumbra, double sign, guint n, gboolean expected)
 {
-  const Scene scene = { 2, { { 5.0 + 0.5 * apart, 5.0, 0.45, penumbra, 2200.0 }, { 5.0 - 0.5 * apart, 5.0, 0.4, penumbra, sign * 2000.0 } },
+  const Scene scene = { 2,
+                        { { 5.0 + 0.5 * apart, 5.0, 0.45, penumbra, 2200.0 },
+                          { 5.0 - 0.5 * apart, 5.0, 0.4, penumbra, sign * 2000.0 } },
                         { 0.30, 0.93, -0.23 } };
   BuilderFrame how;
   TfFrame *field, *intensity;
@@ -373,14 +407,16 @@ test_delta (void)
   check_delta (4.0, 1.3, -1.0, 2, FALSE); /* two penumbrae */
 }
 
-/* -- the leading spot -------------------------------------------------------------------------------------------- */
+/* -- the leading spot -------------------------------------------------------------------------- */
 
 /* A lone leading spot, the following polarity without one. */
 static void
 test_lone_spot (void)
 {
   const Scene seen = { 1, { { 8.0, -12.0, 0.7, 1.5, -2000.0 } }, { 0.30, 0.93, -0.23 } };
-  const Scene whole = { 2, { { 8.0, -12.0, 0.7, 1.5, -2000.0 }, { 3.0, -13.0, 0.01, 2.0, 800.0 } }, { 0.30, 0.93, -0.23 } };
+  const Scene whole = { 2,
+                        { { 8.0, -12.0, 0.7, 1.5, -2000.0 }, { 3.0, -13.0, 0.01, 2.0, 800.0 } },
+                        { 0.30, 0.93, -0.23 } };
   BuilderFrame how;
   g_auto (TfSpots) spots = { 0 };
   builder_init (&how, 5.5, -12.5, 1.0);
@@ -406,7 +442,8 @@ test_third_witness (void)
   g_auto (TfMeasure) plain = { 0 };
   g_auto (TfMeasure) with = { 0 };
   g_auto (TfMeasure) without = { 0 };
-  TfSpots told = { .matched = TRUE, .leading_polarity = -1 }, none = { .matched = TRUE, .leading_polarity = TF_WITNESS_ABSENT };
+  TfSpots told = { .matched = TRUE, .leading_polarity = -1 },
+          none = { .matched = TRUE, .leading_polarity = TF_WITNESS_ABSENT };
   tf_measure_params_init (&params);
   params.outline_term = FALSE;
   builder_init (&how, 5.0, 5.0, 2.0);
@@ -468,7 +505,8 @@ add_companion_tests (void)
   g_test_add_func ("/region/companion/real-headers-hours-apart-do-not-match", test_real_headers);
   g_test_add_func ("/region/companion/two-spots-have-their-areas-places-and-tilt", test_two_spots);
   g_test_add_func ("/region/companion/umbrae-of-both-signs-in-one-penumbra-are-delta", test_delta);
-  g_test_add_func ("/region/companion/a-lone-spot-leads-by-the-other-polaritys-flux", test_lone_spot);
+  g_test_add_func ("/region/companion/a-lone-spot-leads-by-the-other-polaritys-flux",
+                   test_lone_spot);
   g_test_add_func ("/region/companion/the-leading-spot-is-the-third-witness", test_third_witness);
   g_test_add_func ("/region/companion/no-spots-and-no-match-are-told", test_refused_and_empty);
 }

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Figures of complexity: R of a known step, coarse against fine frames, when they are not given, what stands with them. */
+/* Figures of complexity: R of a known step, coarse against fine frames, when they are not given,
+ * what stands with them. */
 
 #include <string.h>
 
@@ -12,7 +13,7 @@
 
 static const double SIGMA_MM = 3.0 / 2.3548200450309493;
 
-/* -- R of a step -------------------------------------------------------------------------------------------- */
+/* -- R of a step ------------------------------------------------------------------------------- */
 
 static double
 step_west (const double unit[3], const double to_observer[3], gconstpointer data)
@@ -29,8 +30,9 @@ inside (double x, double y, double radius_mm)
   return hypot (x, y) < 2.0 * TF_RADIUS_MM * sin (0.5 * radius_mm / TF_RADIUS_MM);
 }
 
-/* R of B = 500 erf (x / (sqrt 2 sigma)) on the grid shifted by (sx, sy) steps, written down from the definition: nodes within a step, in
- * both coordinates, of a node above 150 G and of one below -150 G; each spreads a Gaussian of unit area and FWHM 15 Mm over the flux. */
+/* R of B = 500 erf (x / (sqrt 2 sigma)) on the grid shifted by (sx, sy) steps, written down from
+ * the definition: nodes within a step, in both coordinates, of a node above 150 G and of one below
+ * -150 G; each spreads a Gaussian of unit area and FWHM 15 Mm over the flux. */
 static double
 plain_r (double sx, double sy, double step, double radius_mm)
 {
@@ -54,16 +56,18 @@ plain_r (double sx, double sy, double step, double radius_mm)
         for (int l = -reach; l <= reach; l++)
           for (int k = -reach; k <= reach; k++)
             {
-              double px = (k + sx) * step, py = (l + sy) * step, d2 = (px - x) * (px - x) + (py - y) * (py - y);
+              double px = (k + sx) * step, py = (l + sy) * step,
+                     d2 = (px - x) * (px - x) + (py - y) * (py - y);
               if (inside (px, py, radius_mm))
-                sum += fabs (500.0 * erf (px / (sqrt (2.0) * SIGMA_MM))) * step * step * 1e16 * exp (-0.5 * d2 / (s * s)) * step * step
-                       / (2.0 * TF_PI * s * s);
+                sum += fabs (500.0 * erf (px / (sqrt (2.0) * SIGMA_MM))) * step * step * 1e16
+                       * exp (-0.5 * d2 / (s * s)) * step * step / (2.0 * TF_PI * s * s);
             }
       }
   return sum;
 }
 
-/* 500 G over a band of 30 Mm within the cap, less what the smoothing takes from the middle: sigma sqrt (2 / pi) on each side. */
+/* 500 G over a band of 30 Mm within the cap, less what the smoothing takes from the middle: sigma
+ * sqrt (2 / pi) on each side. */
 static double
 band_flux (double radius_mm)
 {
@@ -76,8 +80,9 @@ static void
 test_r_of_a_step (void)
 {
   const double radius_deg = 3.5, radius_mm = radius_deg * TF_DEG * TF_RADIUS_MM, step = 1.5;
-  double expected = 0.25 * (plain_r (0.0, 0.0, step, radius_mm) + plain_r (0.5, 0.0, step, radius_mm) + plain_r (0.0, 0.5, step, radius_mm)
-                            + plain_r (0.5, 0.5, step, radius_mm));
+  double expected = 0.25
+                    * (plain_r (0.0, 0.0, step, radius_mm) + plain_r (0.5, 0.0, step, radius_mm)
+                       + plain_r (0.0, 0.5, step, radius_mm) + plain_r (0.5, 0.5, step, radius_mm));
   const double scales[] = { 0.5, 2.0 };
   for (guint s = 0; s < G_N_ELEMENTS (scales); s++)
     {
@@ -92,24 +97,31 @@ test_r_of_a_step (void)
       how.half_deg = 7.0;
       how.fine = scales[s] < 1.0 ? 2 : 6;
       g_autoptr (TfFrame) frame = builder_frame_func (&how, step_west, NULL);
-      g_autoptr (TfOutline) outline = tf_outline_new_cap (builder_time (), BUILDER_L0, 0.0, radius_deg, 720);
+      g_autoptr (TfOutline) outline
+          = tf_outline_new_cap (builder_time (), BUILDER_L0, 0.0, radius_deg, 720);
       builder_complexity (&c, frame, outline, &params);
       params.r_weight = 1;
       builder_complexity (&peak, frame, outline, &params);
-      g_test_message ("%.1f arcsec: R %.4g, by plain sums %.4g Mx; length %.1f Mm, flux near %.4g Mx", scales[s], c.r_mx, expected,
-                      c.length_mm, c.flux_near_mx);
+      g_test_message (
+          "%.1f arcsec: R %.4g, by plain sums %.4g Mx; length %.1f Mm, flux near %.4g Mx",
+          scales[s], c.r_mx, expected, c.length_mm, c.flux_near_mx);
       tf_check_near ("R over the plain sums", c.r_mx / expected, 1.0, 0.02);
       tf_check_near ("log10 of R", c.r_log10, log10 (c.r_mx), 1e-12);
       double in_steps = 15.0 / 2.3548200450309493 / step;
-      tf_check_near ("unit peak over unit area", peak.r_mx / c.r_mx, 2.0 * TF_PI * in_steps * in_steps, 0.01);
+      tf_check_near ("unit peak over unit area", peak.r_mx / c.r_mx,
+                     2.0 * TF_PI * in_steps * in_steps, 0.01);
       tf_check_near ("flux near the line", c.flux_near_mx / band_flux (radius_mm), 1.0, 0.01);
       g_assert_cmpuint (c.pieces, ==, 2);
     }
 }
 
-/* -- coarse and fine frames ---------------------------------------------------------------------------------- */
+/* -- coarse and fine frames -------------------------------------------------------------------- */
 
-enum { TANGLES = 8, MOST_POLES = 6 };
+enum
+{
+  TANGLES = 8,
+  MOST_POLES = 6
+};
 
 /* Tangled regions by a seed: poles of both signs within a few degrees, all at mu >= 0.7. */
 static void
@@ -119,12 +131,15 @@ tangle (GRand *rand, double *lon, double *lat, BuilderPole poles[MOST_POLES], gu
   *lat = g_rand_double_range (rand, -15.0, 15.0);
   *n = (guint)g_rand_int_range (rand, 3, MOST_POLES + 1);
   for (guint k = 0; k < *n; k++)
-    poles[k] = (BuilderPole){ *lon + g_rand_double_range (rand, -2.5, 2.5), *lat + g_rand_double_range (rand, -1.5, 1.5),
-                              g_rand_double_range (rand, 0.45, 1.0), (k % 2 ? -1 : 1) * g_rand_double_range (rand, 3e21, 1.5e22) };
+    poles[k] = (BuilderPole){ *lon + g_rand_double_range (rand, -2.5, 2.5),
+                              *lat + g_rand_double_range (rand, -1.5, 1.5),
+                              g_rand_double_range (rand, 0.45, 1.0),
+                              (k % 2 ? -1 : 1) * g_rand_double_range (rand, 3e21, 1.5e22) };
 }
 
 static void
-look_at (TfComplexity *c, double lon, double lat, const BuilderPole *poles, guint n, double scale_arcsec, guint32 seed)
+look_at (TfComplexity *c, double lon, double lat, const BuilderPole *poles, guint n,
+         double scale_arcsec, guint32 seed)
 {
   BuilderFrame how;
   TfComplexityParams params;
@@ -151,8 +166,9 @@ test_coarse_and_fine (void)
 {
   g_autoptr (GRand) rand = g_rand_new_with_seed (7);
   double worst[6] = { 0.0 };
-  static const char *const names[] = { "line length", "strong-gradient length", "gradient-weighted length", "steepest gradient", "R",
-                                       "flux near the line" };
+  static const char *const names[]
+      = { "line length", "strong-gradient length", "gradient-weighted length", "steepest gradient",
+          "R",           "flux near the line" };
   for (guint k = 0; k < TANGLES; k++)
     {
       BuilderPole poles[MOST_POLES];
@@ -163,14 +179,18 @@ test_coarse_and_fine (void)
       tangle (rand, &lon, &lat, poles, &n);
       look_at (&fine, lon, lat, poles, n, 0.5, 50 + k);
       look_at (&coarse, lon, lat, poles, n, 2.0, 150 + k);
-      const double off[] = { unlike (fine.length_mm, coarse.length_mm),
-                             unlike (fine.strong_gradient_length_mm, coarse.strong_gradient_length_mm),
-                             unlike (fine.gradient_weighted_gauss, coarse.gradient_weighted_gauss),
-                             unlike (fine.max_gradient_gauss_mm, coarse.max_gradient_gauss_mm), unlike (fine.r_mx, coarse.r_mx),
-                             unlike (fine.flux_near_mx, coarse.flux_near_mx) };
-      g_test_message ("mu %.2f: line %.0f and %.0f Mm, strong %.1f and %.1f Mm, weighted %.0f and %.0f G, R %.3g and %.3g Mx", fine.mu,
-                      fine.length_mm, coarse.length_mm, fine.strong_gradient_length_mm, coarse.strong_gradient_length_mm,
-                      fine.gradient_weighted_gauss, coarse.gradient_weighted_gauss, fine.r_mx, coarse.r_mx);
+      const double off[]
+          = { unlike (fine.length_mm, coarse.length_mm),
+              unlike (fine.strong_gradient_length_mm, coarse.strong_gradient_length_mm),
+              unlike (fine.gradient_weighted_gauss, coarse.gradient_weighted_gauss),
+              unlike (fine.max_gradient_gauss_mm, coarse.max_gradient_gauss_mm),
+              unlike (fine.r_mx, coarse.r_mx),
+              unlike (fine.flux_near_mx, coarse.flux_near_mx) };
+      g_test_message ("mu %.2f: line %.0f and %.0f Mm, strong %.1f and %.1f Mm, weighted %.0f and "
+                      "%.0f G, R %.3g and %.3g Mx",
+                      fine.mu, fine.length_mm, coarse.length_mm, fine.strong_gradient_length_mm,
+                      coarse.strong_gradient_length_mm, fine.gradient_weighted_gauss,
+                      coarse.gradient_weighted_gauss, fine.r_mx, coarse.r_mx);
       g_assert_cmpuint (fine.pieces, ==, coarse.pieces);
       g_assert_true (fine.delta_candidate == coarse.delta_candidate);
       for (guint i = 0; i < G_N_ELEMENTS (worst); i++)
@@ -182,10 +202,11 @@ test_coarse_and_fine (void)
         }
     }
   for (guint i = 0; i < G_N_ELEMENTS (worst); i++)
-    g_test_message ("0.5 against 2 arcsec: %s differs by at most %.1f %%", names[i], 100.0 * worst[i]);
+    g_test_message ("0.5 against 2 arcsec: %s differs by at most %.1f %%", names[i],
+                    100.0 * worst[i]);
 }
 
-/* -- given or not --------------------------------------------------------------------------------------------- */
+/* -- given or not ------------------------------------------------------------------------------ */
 
 static void
 test_near_the_limb (void)
@@ -236,7 +257,8 @@ test_the_caution_stands_with_the_figures (void)
   g_autoptr (TfFrame) frame = builder_frame (&how, poles, 2);
   g_autoptr (TfOutline) outline = builder_cap (5.0, 5.0, 5.0);
   builder_complexity (&c, frame, outline, &params);
-  g_autofree char *json = json_of (&c, &params), *text = tf_complexity_dup_text (&c), *nothing = json_of (NULL, &params);
+  g_autofree char *json = json_of (&c, &params), *text = tf_complexity_dup_text (&c),
+                  *nothing = json_of (NULL, &params);
   g_assert_nonnull (strstr (json, caution));
   g_assert_nonnull (strstr (json, "\"reference-fwhm\""));
   g_assert_nonnull (strstr (json, "\"points\""));
@@ -248,7 +270,7 @@ test_the_caution_stands_with_the_figures (void)
   g_assert_cmpstr (json, ==, again);
 }
 
-/* -- delta candidate ------------------------------------------------------------------------------------------ */
+/* -- delta candidate --------------------------------------------------------------------------- */
 
 static void
 check_delta (double separation, double sigma, double flux, gboolean expected, const char *reason)
@@ -277,7 +299,7 @@ test_delta (void)
   check_delta (1.5, 0.5, 1e21, FALSE, "delta-no-cores");
 }
 
-/* -- invariants ------------------------------------------------------------------------------------------------ */
+/* -- invariants -------------------------------------------------------------------------------- */
 
 static void
 test_sign_and_turn (void)
@@ -334,7 +356,10 @@ work_out (gpointer data)
 static void
 test_threads (void)
 {
-  enum { THREADS = 6 };
+  enum
+  {
+    THREADS = 6
+  };
   BuilderFrame how;
   BuilderPole poles[2];
   GThread *threads[THREADS];
@@ -359,8 +384,13 @@ test_threads (void)
 static void
 test_a_map_is_refused (void)
 {
-  TfGeometry g = { .projection = TF_PROJECTION_CEA, .width = 360, .height = 180, .crpix = { 180.5, 90.5 },
-                   .crval_deg = { 180.0, 0.0 }, .cd = { { 1.0, 0.0 }, { 0.0, 2.0 / 180.0 } }, .radius_mm = TF_RADIUS_MM };
+  TfGeometry g = { .projection = TF_PROJECTION_CEA,
+                   .width = 360,
+                   .height = 180,
+                   .crpix = { 180.5, 90.5 },
+                   .crval_deg = { 180.0, 0.0 },
+                   .cd = { { 1.0, 0.0 }, { 0.0, 2.0 / 180.0 } },
+                   .radius_mm = TF_RADIUS_MM };
   BuilderFrame how = { .radial = TRUE };
   TfComplexityParams params;
   g_auto (TfComplexity) c = { 0 };
@@ -379,8 +409,10 @@ add_complexity_tests (void)
 {
   g_test_add_func ("/region/complexity/r-of-a-step-is-the-definitions-sum", test_r_of_a_step);
   g_test_add_func ("/region/complexity/coarse-and-fine-frames-agree", test_coarse_and_fine);
-  g_test_add_func ("/region/complexity/near-the-limb-it-is-given-only-when-asked", test_near_the_limb);
-  g_test_add_func ("/region/complexity/the-caution-stands-with-the-figures", test_the_caution_stands_with_the_figures);
+  g_test_add_func ("/region/complexity/near-the-limb-it-is-given-only-when-asked",
+                   test_near_the_limb);
+  g_test_add_func ("/region/complexity/the-caution-stands-with-the-figures",
+                   test_the_caution_stands_with_the_figures);
   g_test_add_func ("/region/complexity/two-near-strong-cores-are-a-delta-candidate", test_delta);
   g_test_add_func ("/region/complexity/signs-and-turns-change-nothing", test_sign_and_turn);
   g_test_add_func ("/region/complexity/threads-agree-bit-for-bit", test_threads);

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* Inversion lines of fields whose zero line is known: two flat half-planes, two poles of one size, a ring. */
+/* Inversion lines of fields whose zero line is known: two flat half-planes, two poles of one size,
+ * a ring. */
 
 #include "inversion-builder.h"
 #include "tf-constants.h"
@@ -25,12 +26,14 @@ half_planes (const double unit[3], const double to_observer[3], gconstpointer da
   return (side > 0.0 ? h->field : -h->field) * mu;
 }
 
-/* A great circle through (lon, lat) whose positive side lies at @angle_deg from west towards north. */
+/* A great circle through (lon, lat) whose positive side lies at @angle_deg from west towards north.
+ * */
 static void
 set_half_planes (HalfPlanes *h, double lon, double lat, double angle_deg, double field)
 {
   double l = (BUILDER_L0 + lon) * TF_DEG, b = lat * TF_DEG, a = angle_deg * TF_DEG;
-  const double west[3] = { -sin (l), cos (l), 0.0 }, north[3] = { -sin (b) * cos (l), -sin (b) * sin (l), cos (b) };
+  const double west[3] = { -sin (l), cos (l), 0.0 },
+               north[3] = { -sin (b) * cos (l), -sin (b) * sin (l), cos (b) };
   for (guint k = 0; k < 3; k++)
     h->pole[k] = cos (a) * west[k] + sin (a) * north[k];
   h->field = field;
@@ -72,12 +75,15 @@ check_half_planes (double scale_arcsec, double lon, double lat, double angle)
   g_assert_cmpuint (c.inversion.n, ==, 1);
   const TfInversionLine *line = &c.inversion.lines[0];
   double gradient = 2.0 * field / (sqrt (2.0 * TF_PI) * SIGMA_MM);
-  g_test_message ("%.1f arcsec at (%.0f, %.0f), mu %.2f: length %.2f of %.2f Mm, off the circle by %.3f Mm, gradient %.1f to %.1f of %.1f G/Mm",
-                  scale_arcsec, lon, lat, c.mu, line->length_mm, 2.0 * radius * TF_DEG * TF_RADIUS_MM, largest_departure (line, &h),
+  g_test_message ("%.1f arcsec at (%.0f, %.0f), mu %.2f: length %.2f of %.2f Mm, off the circle by "
+                  "%.3f Mm, gradient %.1f to %.1f of %.1f G/Mm",
+                  scale_arcsec, lon, lat, c.mu, line->length_mm,
+                  2.0 * radius * TF_DEG * TF_RADIUS_MM, largest_departure (line, &h),
                   line->mean_gradient_gauss_mm, line->max_gradient_gauss_mm, gradient);
   g_assert_false (line->closed);
   /* both ends are within one step of the outline */
-  tf_check_between ("length", line->length_mm, 2.0 * radius * TF_DEG * TF_RADIUS_MM - 2.0 * params.step_mm,
+  tf_check_between ("length", line->length_mm,
+                    2.0 * radius * TF_DEG * TF_RADIUS_MM - 2.0 * params.step_mm,
                     2.0 * radius * TF_DEG * TF_RADIUS_MM + 1e-6);
   tf_check_near ("off the great circle, Mm", largest_departure (line, &h), 0.0, 0.15);
   tf_check_near ("mean gradient", line->mean_gradient_gauss_mm / gradient, 1.0, 0.03);
@@ -95,8 +101,8 @@ test_half_planes (void)
   check_half_planes (2.0, -30.0, -20.0, 100.0);
 }
 
-/* Positive on the left: with the positive side in the west the line runs from south to north... seen with west to the right that is
- * to the south. */
+/* Positive on the left: with the positive side in the west the line runs from south to north...
+ * seen with west to the right that is to the south. */
 static void
 test_side (void)
 {
@@ -140,17 +146,21 @@ test_two_gaussians (void)
       for (guint i = 0; i < line->n; i++)
         {
           const TfInversionPoint *p = &line->points[i];
-          double a = tf_sphere_distance (p->lon_deg, p->lat_deg, BUILDER_L0 + poles[0].lon, poles[0].lat);
-          double b = tf_sphere_distance (p->lon_deg, p->lat_deg, BUILDER_L0 + poles[1].lon, poles[1].lat);
+          double a = tf_sphere_distance (p->lon_deg, p->lat_deg, BUILDER_L0 + poles[0].lon,
+                                         poles[0].lat);
+          double b = tf_sphere_distance (p->lon_deg, p->lat_deg, BUILDER_L0 + poles[1].lon,
+                                         poles[1].lat);
           worst = fmax (worst, fabs (a - b) * TF_DEG * TF_RADIUS_MM);
         }
-      g_test_message ("%.1f arcsec: length %.1f Mm, difference of the distances at most %.3f Mm", scales[s], line->length_mm, worst);
+      g_test_message ("%.1f arcsec: length %.1f Mm, difference of the distances at most %.3f Mm",
+                      scales[s], line->length_mm, worst);
       tf_check_near ("difference of the distances to the poles, Mm", worst, 0.0, 0.15);
       tf_check_between ("length, Mm", line->length_mm, 30.0, 125.0);
     }
 }
 
-/* A pole inside a wide one of the other sign: B = A exp (-x / s^2) - A' exp (-x / S^2) is zero on a circle, x = 1 - cos psi. */
+/* A pole inside a wide one of the other sign: B = A exp (-x / s^2) - A' exp (-x / S^2) is zero on a
+ * circle, x = 1 - cos psi. */
 static void
 test_ring (void)
 {
@@ -170,7 +180,8 @@ test_ring (void)
   g_assert_cmpuint (c.inversion.n, ==, 1);
   const TfInversionLine *line = &c.inversion.lines[0];
   g_assert_true (line->closed);
-  tf_check_near ("length of the ring over the circle's", line->length_mm / (2.0 * TF_PI * sin (psi) * TF_RADIUS_MM), 1.0, 0.01);
+  tf_check_near ("length of the ring over the circle's",
+                 line->length_mm / (2.0 * TF_PI * sin (psi) * TF_RADIUS_MM), 1.0, 0.01);
 }
 
 static void
@@ -181,7 +192,10 @@ test_outline_cuts (void)
   TfComplexityParams params;
   g_auto (TfComplexity) c = { 0 };
   g_autoptr (GError) error = NULL;
-  const TfVertex hole[4] = { { BUILDER_L0 - 1.0, -1.0 }, { BUILDER_L0 + 1.0, -1.0 }, { BUILDER_L0 + 1.0, 1.0 }, { BUILDER_L0 - 1.0, 1.0 } };
+  const TfVertex hole[4] = { { BUILDER_L0 - 1.0, -1.0 },
+                             { BUILDER_L0 + 1.0, -1.0 },
+                             { BUILDER_L0 + 1.0, 1.0 },
+                             { BUILDER_L0 - 1.0, 1.0 } };
   tf_complexity_params_init (&params);
   builder_init (&how, 0.0, 0.0, 2.0);
   set_half_planes (&h, 0.0, 0.0, 0.0, 400.0);
@@ -191,7 +205,8 @@ test_outline_cuts (void)
   g_assert_no_error (error);
   builder_complexity (&c, frame, outline, &params);
   g_assert_cmpuint (c.inversion.n, ==, 2);
-  tf_check_between ("length without the left-out area, Mm", c.length_mm, 6.0 * TF_DEG * TF_RADIUS_MM - 4.0 * params.step_mm,
+  tf_check_between ("length without the left-out area, Mm", c.length_mm,
+                    6.0 * TF_DEG * TF_RADIUS_MM - 4.0 * params.step_mm,
                     6.0 * TF_DEG * TF_RADIUS_MM + 1e-6);
 }
 
@@ -219,9 +234,12 @@ test_weak_lines_are_not_drawn (void)
 void
 add_inversion_tests (void)
 {
-  g_test_add_func ("/region/inversion/two-flat-half-planes-have-the-great-circles-length-and-the-gaussians-gradient", test_half_planes);
+  g_test_add_func ("/region/inversion/"
+                   "two-flat-half-planes-have-the-great-circles-length-and-the-gaussians-gradient",
+                   test_half_planes);
   g_test_add_func ("/region/inversion/positive-lies-on-the-left", test_side);
-  g_test_add_func ("/region/inversion/two-equal-poles-cancel-where-they-are-equally-far", test_two_gaussians);
+  g_test_add_func ("/region/inversion/two-equal-poles-cancel-where-they-are-equally-far",
+                   test_two_gaussians);
   g_test_add_func ("/region/inversion/a-pole-inside-another-has-a-closed-line", test_ring);
   g_test_add_func ("/region/inversion/a-left-out-area-cuts-the-line", test_outline_cuts);
   g_test_add_func ("/region/inversion/no-line-between-weak-fields", test_weak_lines_are_not_drawn);

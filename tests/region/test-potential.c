@@ -2,14 +2,18 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The potential estimate of the radial field against fields that are potential and known at every place: magnetic charges buried under
- * the surface. Their sum is zero for a bipole. B = sum of q (r - r0) / |r - r0|^3, q in G Mm2. */
+/* The potential estimate of the radial field against fields that are potential and known at every
+ * place: magnetic charges buried under the surface. Their sum is zero for a bipole. B = sum of q (r
+ * - r0) / |r - r0|^3, q in G Mm2. */
 
 #include "inversion-builder.h"
 #include "tf-constants.h"
 #include "tf-potential.h"
 
-enum { MOST_CHARGES = 4 };
+enum
+{
+  MOST_CHARGES = 4
+};
 
 typedef struct
 {
@@ -69,10 +73,11 @@ make_bipole (Charges *c, double lon, double lat)
   add_charge (c, lon - 2.4, lat + 0.6, 20.0, -1500.0 * 16.0 * 16.0 / 400.0);
 }
 
-/* rms over the pixels whose radial field is at least 50 G of both estimates' departures, as shares of the rms field. */
+/* rms over the pixels whose radial field is at least 50 G of both estimates' departures, as shares
+ * of the rms field. */
 static void
-compare (const TfFrame *frame, const TfOutline *outline, const TfPotential *potential, const Charges *charges, double *of_potential,
-         double *of_los)
+compare (const TfFrame *frame, const TfOutline *outline, const TfPotential *potential,
+         const Charges *charges, double *of_potential, double *of_los)
 {
   double all = 0.0, sum[2] = { 0.0 };
   g_autoptr (TfMask) mask = tf_mask_new (frame, outline, 0.17, 0);
@@ -82,7 +87,8 @@ compare (const TfFrame *frame, const TfOutline *outline, const TfPotential *pote
       double truth = upright (p->unit, NULL, charges);
       if (fabs (truth) < 50.0)
         continue;
-      double a = tf_potential_radial (potential, p->unit, p->field, p->mu) - truth, b = p->field / p->mu - truth;
+      double a = tf_potential_radial (potential, p->unit, p->field, p->mu) - truth,
+             b = p->field / p->mu - truth;
       all += truth * truth;
       sum[0] += a * a;
       sum[1] += b * b;
@@ -108,8 +114,9 @@ check_place (double lon, double lat, double scale_arcsec, double most)
   g_assert_nonnull (potential);
   compare (frame, outline, potential, &charges, &of_potential, &of_los);
   tf_geometry_sun_to_pixel (tf_frame_get_geometry (frame), BUILDER_L0 + lon, lat, &x, &y, &mu);
-  g_test_message ("%.1f arcsec, mu %.2f: departure of the potential estimate %.3f, of Blos / mu %.3f of the rms field; left %.4f", scale_arcsec,
-                  mu, of_potential, of_los, tf_potential_get_left (potential));
+  g_test_message ("%.1f arcsec, mu %.2f: departure of the potential estimate %.3f, of Blos / mu "
+                  "%.3f of the rms field; left %.4f",
+                  scale_arcsec, mu, of_potential, of_los, tf_potential_get_left (potential));
   tf_check_between ("departure of the potential estimate", of_potential, 0.0, most);
   if (mu < 0.95)
     tf_check_between ("potential over Blos / mu", of_potential / of_los, 0.0, 0.05);
@@ -127,10 +134,11 @@ test_bipoles (void)
   check_place (45.0, -5.0, 0.7, 0.02);
 }
 
-/* -- as the field of a measurement ------------------------------------------------------------------------------ */
+/* -- as the field of a measurement ------------------------------------------------------------- */
 
 static void
-measure_as (TfMeasure *m, const BuilderFrame *how, const Charges *charges, int field_used, gboolean product)
+measure_as (TfMeasure *m, const BuilderFrame *how, const Charges *charges, int field_used,
+            gboolean product)
 {
   TfMeasureParams params;
   BuilderFrame seen_how = *how;
@@ -149,17 +157,18 @@ measure_as (TfMeasure *m, const BuilderFrame *how, const Charges *charges, int f
 static double
 pole_off (const TfMeasure *m, const TfMeasure *truth)
 {
-  return fmax (tf_sphere_distance (m->positive.carrington_lon_deg, m->positive.lat_deg, truth->positive.carrington_lon_deg,
-                                   truth->positive.lat_deg),
-               tf_sphere_distance (m->negative.carrington_lon_deg, m->negative.lat_deg, truth->negative.carrington_lon_deg,
-                                   truth->negative.lat_deg));
+  return fmax (tf_sphere_distance (m->positive.carrington_lon_deg, m->positive.lat_deg,
+                                   truth->positive.carrington_lon_deg, truth->positive.lat_deg),
+               tf_sphere_distance (m->negative.carrington_lon_deg, m->negative.lat_deg,
+                                   truth->negative.carrington_lon_deg, truth->negative.lat_deg));
 }
 
 /* The truth is the same measurement of the radial field itself. */
 static void
 test_measured (void)
 {
-  static const double places[][2] = { { 30.0, 8.0 }, { -45.0, 12.0 }, { 56.0, -10.0 }, { -64.0, 5.0 } };
+  static const double places[][2]
+      = { { 30.0, 8.0 }, { -45.0, 12.0 }, { 56.0, -10.0 }, { -64.0, 5.0 } };
   for (guint k = 0; k < G_N_ELEMENTS (places); k++)
     {
       BuilderFrame how;
@@ -175,17 +184,23 @@ test_measured (void)
       measure_as (&truth, &how, &charges, TF_FIELD_USED_RADIAL, TRUE);
       measure_as (&potential, &how, &charges, TF_FIELD_USED_POTENTIAL, FALSE);
       measure_as (&radial, &how, &charges, TF_FIELD_USED_RADIAL, FALSE);
-      g_test_message ("mu %.2f: unsigned flux %.3f (Blos / mu %.3f) of the truth, poles off by %.3f (%.3f) deg, bearing by %.2f (%.2f) deg, noise "
-                      "terms %.3f and %.3f deg", truth.mu, potential.flux_unsigned_mx / truth.flux_unsigned_mx,
-                      radial.flux_unsigned_mx / truth.flux_unsigned_mx, pole_off (&potential, &truth), pole_off (&radial, &truth),
-                      potential.axis_bearing_deg - truth.axis_bearing_deg, radial.axis_bearing_deg - truth.axis_bearing_deg,
-                      potential.tilt_terms.noise, radial.tilt_terms.noise);
+      g_test_message ("mu %.2f: unsigned flux %.3f (Blos / mu %.3f) of the truth, poles off by "
+                      "%.3f (%.3f) deg, bearing by %.2f (%.2f) deg, noise "
+                      "terms %.3f and %.3f deg",
+                      truth.mu, potential.flux_unsigned_mx / truth.flux_unsigned_mx,
+                      radial.flux_unsigned_mx / truth.flux_unsigned_mx,
+                      pole_off (&potential, &truth), pole_off (&radial, &truth),
+                      potential.axis_bearing_deg - truth.axis_bearing_deg,
+                      radial.axis_bearing_deg - truth.axis_bearing_deg, potential.tilt_terms.noise,
+                      radial.tilt_terms.noise);
       g_assert_cmpint (potential.field_used, ==, TF_FIELD_USED_POTENTIAL);
       g_assert_cmpint (potential.leading_polarity, ==, 1);
-      tf_check_near ("unsigned flux over the truth", potential.flux_unsigned_mx / truth.flux_unsigned_mx, 1.0, 0.03);
+      tf_check_near ("unsigned flux over the truth",
+                     potential.flux_unsigned_mx / truth.flux_unsigned_mx, 1.0, 0.03);
       tf_check_between ("poles off, deg", pole_off (&potential, &truth), 0.0, 0.05);
       tf_check_near ("bearing, deg", potential.axis_bearing_deg, truth.axis_bearing_deg, 0.3);
-      tf_check_between ("poles off over those of Blos / mu", pole_off (&potential, &truth) / pole_off (&radial, &truth), 0.0, 0.2);
+      tf_check_between ("poles off over those of Blos / mu",
+                        pole_off (&potential, &truth) / pole_off (&radial, &truth), 0.0, 0.2);
     }
 }
 
@@ -211,8 +226,9 @@ test_complexity_of_it (void)
   tf_complexity_region (&radial, frame, outline, &measure, &params);
   measure.field_used = TF_FIELD_USED_POTENTIAL;
   tf_complexity_region (&potential, frame, outline, &measure, &params);
-  g_test_message ("one spot at mu %.2f: inversion line %.0f Mm by Blos / mu, %.0f Mm by the potential estimate", radial.mu, radial.length_mm,
-                  potential.length_mm);
+  g_test_message (
+      "one spot at mu %.2f: inversion line %.0f Mm by Blos / mu, %.0f Mm by the potential estimate",
+      radial.mu, radial.length_mm, potential.length_mm);
   tf_check_between ("false line by Blos / mu, Mm", radial.length_mm, 10.0, 200.0);
   tf_check_near ("false line by the potential estimate, Mm", potential.length_mm, 0.0, 0.0);
 }
@@ -236,7 +252,8 @@ nothing (const double unit[3], const double to_observer[3], gconstpointer data)
   return 0.0;
 }
 
-/* |Bz / Blos| is at most 1 / mu at every wave number, so noise grows no more than it does in Blos / mu. */
+/* |Bz / Blos| is at most 1 / mu at every wave number, so noise grows no more than it does in Blos /
+ * mu. */
 static void
 test_noise (void)
 {
@@ -255,8 +272,10 @@ test_noise (void)
       sum += a * a;
       plain += p->field / p->mu * p->field / p->mu;
     }
-  g_test_message ("noise of the potential estimate over that of Blos / mu: %.3f", sqrt (sum / plain));
-  tf_check_between ("noise of the potential estimate over that of Blos / mu", sqrt (sum / plain), 0.4, 1.02);
+  g_test_message ("noise of the potential estimate over that of Blos / mu: %.3f",
+                  sqrt (sum / plain));
+  tf_check_between ("noise of the potential estimate over that of Blos / mu", sqrt (sum / plain),
+                    0.4, 1.02);
 }
 
 /* Far from the box the estimate is Blos / mu. */
@@ -280,8 +299,13 @@ test_outside_the_box (void)
 static void
 test_maps_and_products (void)
 {
-  TfGeometry g = { .projection = TF_PROJECTION_CEA, .width = 360, .height = 180, .crpix = { 180.5, 90.5 },
-                   .crval_deg = { 180.0, 0.0 }, .cd = { { 1.0, 0.0 }, { 0.0, 2.0 / 180.0 } }, .radius_mm = TF_RADIUS_MM };
+  TfGeometry g = { .projection = TF_PROJECTION_CEA,
+                   .width = 360,
+                   .height = 180,
+                   .crpix = { 180.5, 90.5 },
+                   .crval_deg = { 180.0, 0.0 },
+                   .cd = { { 1.0, 0.0 }, { 0.0, 2.0 / 180.0 } },
+                   .radius_mm = TF_RADIUS_MM };
   BuilderFrame how = { 0 };
   TfMeasureParams params;
   g_auto (TfMeasure) m = { 0 };
@@ -307,10 +331,13 @@ test_maps_and_products (void)
 void
 add_potential_tests (void)
 {
-  g_test_add_func ("/region/potential/buried-charges-are-met-better-than-by-blos-over-mu", test_bipoles);
-  g_test_add_func ("/region/potential/a-measurement-of-it-is-that-of-the-radial-field", test_measured);
+  g_test_add_func ("/region/potential/buried-charges-are-met-better-than-by-blos-over-mu",
+                   test_bipoles);
+  g_test_add_func ("/region/potential/a-measurement-of-it-is-that-of-the-radial-field",
+                   test_measured);
   g_test_add_func ("/region/potential/it-shows-no-false-line-beside-a-spot", test_complexity_of_it);
-  g_test_add_func ("/region/potential/a-map-is-refused-and-a-radial-product-taken-as-it-is", test_maps_and_products);
+  g_test_add_func ("/region/potential/a-map-is-refused-and-a-radial-product-taken-as-it-is",
+                   test_maps_and_products);
   g_test_add_func ("/region/potential/noise-grows-no-more-than-in-blos-over-mu", test_noise);
   g_test_add_func ("/region/potential/radial-products-have-none", test_not_on_radial_products);
   g_test_add_func ("/region/potential/outside-the-box-it-is-blos-over-mu", test_outside_the_box);
