@@ -43,6 +43,16 @@ add_pole (GString *out, const char *sign, const TfPole *pole)
                             pole->pixels);
 }
 
+/* A term that could not be worked out is a dash. */
+static void
+add_term (GString *out, const char *name, double term)
+{
+  if (isfinite (term))
+    g_string_append_printf (out, "%s %.2f", name, term);
+  else
+    g_string_append_printf (out, "%s —", name);
+}
+
 char *
 tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
 {
@@ -51,18 +61,30 @@ tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
   tf_study_measure_row (m, &row);
   g_autofree char *says = tf_verdict_dup_text (&verdict, &row, FALSE);
   GString *out = g_string_new (NULL);
-  g_string_append_printf (out, _ ("latitude %+.2f°, CMD %+.2f°, μ %.2f, floor %.0f G (%s), noise %.1f G, field %s\n"), m->lat_deg,
-                          m->cmd_deg, m->mu, m->floor_gauss, tf_floor_kind_name (m->floor_kind), m->noise_gauss,
+  g_string_append_printf (out, _ ("latitude %+.2f°, "), m->lat_deg);
+  if (isfinite (m->cmd_deg)) /* not on a map */
+    g_string_append_printf (out, _ ("CMD %+.2f°, μ %.2f, "), m->cmd_deg, m->mu);
+  else
+    g_string_append_printf (out, _ ("Carrington %.2f°, "), m->carrington_lon_deg);
+  g_string_append_printf (out, _ ("floor %.0f G (%s), noise %.1f G, field %s\n"), m->floor_gauss, tf_floor_kind_name (m->floor_kind), m->noise_gauss,
                           tf_field_used_name (m->field_used));
   add_pole (out, "+", &m->positive);
   add_pole (out, "−", &m->negative);
   if (m->leading_polarity != 0)
     g_string_append_printf (out, _ ("  leading %s (%s)\n"), m->leading_polarity > 0 ? "+" : "−",
                             m->leading_sure ? _ ("sure") : _ ("not sure"));
-  if (isfinite (m->axis_bearing_deg))
-    g_string_append_printf (out, _ ("  axis bearing %+.2f°, axis tilt %+.2f° ± %.2f° (noise %.2f, outline %.2f, floor %.2f)\n"),
-                            m->axis_bearing_deg, m->axis_tilt_deg, m->tilt_terms.total, m->tilt_terms.noise,
-                            m->tilt_terms.outline, m->tilt_terms.floor);
+  if (isfinite (m->axis_bearing_deg) && !isfinite (m->axis_tilt_deg))
+    g_string_append_printf (out, _ ("  axis bearing %+.2f°, no axis tilt: the poles lie on opposite sides of the equator\n"),
+                            m->axis_bearing_deg);
+  else if (isfinite (m->axis_bearing_deg))
+    {
+      g_string_append_printf (out, _ ("  axis bearing %+.2f°, axis tilt %+.2f° ± %.2f°"), m->axis_bearing_deg, m->axis_tilt_deg,
+                              m->tilt_terms.total);
+      add_term (out, _ (" (noise"), m->tilt_terms.noise);
+      add_term (out, _ (", outline"), m->tilt_terms.outline);
+      add_term (out, _ (", floor"), m->tilt_terms.floor);
+      g_string_append (out, ")\n");
+    }
   if (isfinite (m->separation_deg))
     g_string_append_printf (out, _ ("  separation %.2f° ± %.2f° (%.0f Mm), compactness %.2f, pieces %u\n"), m->separation_deg,
                             m->separation_sigma_deg, m->separation_mm, m->compactness, m->pieces);

@@ -55,7 +55,8 @@ tf_batch_parse (GOptionContext *context, int *argc, char ***argv)
   g_autoptr (GError) error = NULL;
   if (g_option_context_parse (own, argc, argv, &error))
     return TRUE;
-  tf_batch_say_error (error);
+  g_autofree char *line = g_strdup_printf (_ ("%s: %s. See %s --help."), g_get_prgname (), error->message, g_get_prgname ());
+  tf_batch_say (line);
   return FALSE;
 }
 

@@ -36,8 +36,11 @@ static void
 print_verbs (FILE *to)
 {
   fprintf (to, _ ("tiltfield-run %s: bipolar regions on the Sun, without a window.\n\nUse: tiltfield-run VERB WORDS…\n\n"), TF_VERSION);
+  glong wide = 0;
   for (const TfVerb *v = tf_verbs; v->name != NULL; v++)
-    fprintf (to, "  %-9s %-18s %s\n", v->name, v->words, _ (v->summary));
+    wide = MAX (wide, g_utf8_strlen (v->words, -1));
+  for (const TfVerb *v = tf_verbs; v->name != NULL; v++)
+    fprintf (to, "  %-9s %s%*s  %s\n", v->name, v->words, (int)(wide - g_utf8_strlen (v->words, -1)), "", _ (v->summary));
   fprintf (to, _ ("\nEvery verb has --help with an example. Exit: 0 all done, 1 in part, 2 the call is off, 3 nothing done.\n"));
 }
 
@@ -67,6 +70,9 @@ main (int argc, char **argv)
         g_set_prgname (name);
         return v->run (argc - 1, argv + 1);
       }
-  print_verbs (stderr);
+  if (argc >= 2)
+    fprintf (stderr, _ ("“%s” is not a verb of tiltfield-run. See tiltfield-run --help.\n"), argv[1]);
+  else
+    print_verbs (stderr);
   return TF_EXIT_CALL;
 }

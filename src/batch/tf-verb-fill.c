@@ -75,12 +75,23 @@ outcome_exit (const Tally *tally)
   return good > 0 ? TF_EXIT_PART : TF_EXIT_NOTHING;
 }
 
+/* A ledger is not made for frames of which none is there: most likely a name is mistyped. */
+static gboolean
+any_is_there (char *const *given, GError **error)
+{
+  for (guint k = 0; given[k] != NULL; k++)
+    if (g_file_test (given[k], G_FILE_TEST_EXISTS))
+      return TRUE;
+  g_set_error (error, G_FILE_ERROR, G_FILE_ERROR_NOENT, _ ("%s is not there: name a FITS file or a folder of them"), given[0]);
+  return FALSE;
+}
+
 static int
 fill (const char *path, char *const *given, const TfIntakeParams *params, gboolean json)
 {
   g_autoptr (GError) error = NULL;
   g_autoptr (TfWork) work = tf_batch_work_new (1);
-  g_auto (GStrv) files = tf_intake_list (given, &error);
+  g_auto (GStrv) files = any_is_there (given, &error) ? tf_intake_list (given, &error) : NULL;
   g_autoptr (TfLedger) ledger = files != NULL ? tf_ledger_open_or_create (path, 'T', &error) : NULL;
   if (ledger == NULL)
     {

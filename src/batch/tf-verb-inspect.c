@@ -113,8 +113,9 @@ print_disk (const TfGeometry *g)
   const TfObserver *o = &g->observer;
   printf (_ ("  observer: B0 %+.3f°, Stonyhurst %+.3f°, Carrington %.3f°, %.4f au (%s)\n"), o->b0_deg, o->stonyhurst_lon_deg,
           o->carrington_lon_deg, o->distance_m / TF_AU_M, tf_observer_source_name (o->source));
+  double north = tf_geometry_north_angle (g);
   printf (_ ("  disk: radius %.2f″ = %.1f pixels, %.4f″ a pixel, solar north %+.2f° from up\n"), tf_geometry_radius_arcsec (g),
-          tf_geometry_disk_radius (g), tf_geometry_scale_arcsec (g), tf_geometry_north_angle (g));
+          tf_geometry_disk_radius (g), tf_geometry_scale_arcsec (g), fabs (north) < 0.005 ? 0.0 : north);
 }
 
 static void
@@ -136,7 +137,8 @@ print_info (const char *path, const TfFrameInfo *info, const TfFrame *frame)
   if (frame != NULL)
     {
       gboolean map = tf_geometry_is_map (g);
-      printf (_ ("  field: %s, in %s; noise %.1f G %s\n"), tf_field_name (info->field), *info->unit != '\0' ? info->unit : "?",
+      printf (_ ("  field: %s, unit %s; noise %.1f G %s\n"), tf_field_name (info->field),
+              *info->unit != '\0' ? info->unit : _ ("not said"),
               tf_frame_noise_at (frame, map ? 0.0 : 1.0), map ? _ ("at the equator") : _ ("at disk centre"));
     }
   print_notes (_ ("repair"), info->repairs);

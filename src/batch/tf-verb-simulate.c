@@ -26,7 +26,11 @@ tf_verb_simulate (int argc, char **argv)
   g_autoptr (GError) error = NULL;
   g_autoptr (TfWork) work = tf_batch_work_new (0);
   if (demo ? tf_simulate_demo (argv[2], work, &error) : tf_simulate_frames (argv[2], &params, work, &error))
-    return TF_EXIT_DONE;
+    {
+      g_autofree char *line = g_strdup_printf (_ ("%s: made, the truth beside each frame as .truth.json"), argv[2]);
+      tf_batch_say (line);
+      return TF_EXIT_DONE;
+    }
   tf_batch_say_error (error);
   return TF_EXIT_NOTHING;
 }

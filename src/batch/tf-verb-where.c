@@ -65,6 +65,9 @@ print_spot (const Spot *s)
     printf (_ ("Carrington %.4f° latitude %+.4f°: not on this frame\n"), s->place.carrington_lon_deg, s->place.lat_deg);
   else if (isnan (s->place.lat_deg))
     printf (_ ("pixel %.2f,%.2f: off the disk\n"), s->x, s->y);
+  else if (isnan (s->place.mu)) /* a map */
+    printf (_ ("pixel %.2f,%.2f: Carrington %.4f° latitude %+.4f° %.1f G\n"), s->x, s->y, s->place.carrington_lon_deg,
+            s->place.lat_deg, s->field);
   else
     printf (_ ("pixel %.2f,%.2f: Stonyhurst %+.4f° Carrington %.4f° latitude %+.4f° CMD %+.4f° μ %.4f %.1f G\n"), s->x, s->y,
             s->place.stonyhurst_lon_deg, s->place.carrington_lon_deg, s->place.lat_deg, s->place.cmd_deg, s->place.mu, s->field);

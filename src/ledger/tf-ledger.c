@@ -239,14 +239,16 @@ make_file (const char *path, const TfLedgerHow *how, GError **error)
       close (fd);
       return TRUE;
     }
-  if (errno == EEXIST)
+  int why = errno; /* the look at the file sets errno anew */
+  if (why == EEXIST)
     return fail (error, TF_LEDGER_ERROR_OPEN,
                  _ ("%s is there already; open it, or choose another name"), path);
-  if (errno == EACCES && g_file_test (path, G_FILE_TEST_EXISTS))
+  if (why == EACCES && g_file_test (path, G_FILE_TEST_EXISTS))
     return TRUE; /* opens for reading */
   g_set_error (error, TF_LEDGER_ERROR,
-               errno == ENOSPC ? TF_LEDGER_ERROR_FULL : TF_LEDGER_ERROR_OPEN,
-               _ ("the ledger %s cannot be made: %s"), path, g_strerror (errno));
+               why == ENOSPC ? TF_LEDGER_ERROR_FULL : TF_LEDGER_ERROR_OPEN,
+               _ ("the ledger %s cannot be made: %s. Choose a folder that is there, may be written to and has room"),
+               path, g_strerror (why));
   return FALSE;
 }
 

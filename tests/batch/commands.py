@@ -108,7 +108,23 @@ def _():
 def _():
     for words in (["inspect"], ["measure", "a.fits"], ["fill", "x.ledger"], ["laws"], ["export", "a"], ["nonsense"],
                   ["measure", "a.fits", "--cap", "1,2"], ["measure", "--no-such-option", "a.fits"]):
-        call(*words, code=2 if words != ["measure", "a.fits", "--cap", "1,2"] else 3)
+        said = call(*words, code=2 if words != ["measure", "a.fits", "--cap", "1,2"] else 3).stderr.strip()
+        assert said.count("\n") == 0 and said, (words, said)
+    for words, name in ((["nonsense"], "nonsense"), (["inspect", "--no-such-option"], "tiltfield-run inspect --help")):
+        assert name in call(*words, code=2).stderr, words
+    mistyped = os.path.join(work, "mistyped.ledger")
+    call("fill", mistyped, os.path.join(work, "no-such-folder"), code=3)
+    assert not os.path.exists(mistyped), "a ledger was made for frames that are not there"
+
+
+@test("no measure prints a number that does not exist: on a map, over the equator")
+def _():
+    for words in (["brindle-map-2142.fits", "--cap", "170,14,8", "--carrington"],
+                  ["brindle-20131012-0600.fits", "--cap", "0,0,12"], ["brindle-20131012-0600.fits", "--cap", "0,2,8"]):
+        said = call("measure", os.path.join(FRAMES, words[0]), *words[1:]).stdout
+        assert said and "nan" not in said.lower(), said[:400]
+    said = call("where", os.path.join(FRAMES, "brindle-map-2142.fits"), "170,90").stdout
+    assert "Carrington" in said and "nan" not in said.lower(), said
 
 
 @test("inspect gives every key for every demo frame, and a refused frame is an answer")
