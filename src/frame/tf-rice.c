@@ -132,7 +132,9 @@ take_held (Bits *b, guint low, guint32 *packed)
 {
   if (b->held < 32)
     refill (b);
-  guint lead = (guint)__builtin_clzll (b->bits | 1);
+  if (b->bits == 0)
+    return FALSE;
+  guint lead = (guint)__builtin_clzll (b->bits);
   if (lead + low + 1 > b->held)
     return FALSE;
   guint64 rest = b->bits << lead << 1;

@@ -155,8 +155,8 @@ int
 main (int argc, char **argv)
 {
   static const guint widths[] = { 1, 2, 4 };
-  guint n = argc > 1 ? (guint)g_ascii_strtoull (argv[1], NULL, 10) : 3000;
-  guint32 seed = argc > 2 ? (guint32)g_ascii_strtoull (argv[2], NULL, 10) : 20131012;
+  guint n = argc > 1 ? (guint)g_ascii_strtoull (argv[1], NULL, 10) : 20000;
+  guint32 seed = argc > 2 ? (guint32)g_ascii_strtoull (argv[2], NULL, 10) : 5;
   g_autoptr (GRand) chance = g_rand_new_with_seed (seed);
   for (guint turn = 0; turn < n; turn++)
     {
