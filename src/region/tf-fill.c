@@ -137,11 +137,12 @@ mark_edge (TfFill *fill, const Edge *e, guint row)
     fill->cell[row][c] = CELL_MIXED;
 }
 
-static gboolean
-row_touches (const TfFill *fill, const Edge *e, guint row)
+/* The first and last row of cells that an edge may touch. */
+static void
+find_rows (const TfFill *fill, const Edge *e, guint rows[2])
 {
-  double lo = fill->v_min + (row - 0.01) * fill->v_step, hi = lo + 1.02 * fill->v_step;
-  return e->v1 >= lo && e->v0 <= hi;
+  rows[0] = clamp_cell ((e->v0 - fill->v_min) / fill->v_step - 0.01);
+  rows[1] = clamp_cell ((e->v1 - fill->v_min) / fill->v_step + 0.01);
 }
 
 static gboolean
@@ -181,17 +182,20 @@ settle_row (TfFill *fill, guint row)
 static void
 make_grid (TfFill *fill)
 {
+  guint n = fill->edges->len;
+  const Edge *edges = (const Edge *)(const void *)fill->edges->data;
+  g_autofree guint (*rows)[2] = g_malloc_n (MAX (n, 1), sizeof *rows);
+  for (guint k = 0; k < n; k++)
+    find_rows (fill, &edges[k], rows[k]);
   for (guint row = 0; row < CELLS; row++)
     {
       fill->row_first[row] = fill->row_edges->len;
-      for (guint k = 0; k < fill->edges->len; k++)
-        {
-          const Edge *e = &g_array_index (fill->edges, Edge, k);
-          if (!row_touches (fill, e, row))
-            continue;
-          g_array_append_val (fill->row_edges, k);
-          mark_edge (fill, e, row);
-        }
+      for (guint k = 0; k < n; k++)
+        if (row >= rows[k][0] && row <= rows[k][1])
+          {
+            g_array_append_val (fill->row_edges, k);
+            mark_edge (fill, &edges[k], row);
+          }
       fill->row_first[row + 1] = fill->row_edges->len;
       settle_row (fill, row);
     }

@@ -11,7 +11,8 @@
 
 enum
 {
-  CUT_SAMPLES = 32
+  CUT_SAMPLES = 32,
+  GAP = 16, /* weak pixels that are not worth a new start of the geometry */
 };
 
 struct _TfMask
@@ -91,6 +92,26 @@ count_most (const TfMask *mask, const TfFrame *frame, float least)
   return n;
 }
 
+/* The places of a row's pixels; of those weaker than @least only where they lie among others. */
+static void
+find_places (const TfGeometry *g, const TfMaskBox *box, guint y, const float *field, float least, const Row *row)
+{
+  guint start = 0, end = box->width;
+  for (guint k = 0; k < box->width; k = end)
+    {
+      for (start = k; least > 0.0f && start < box->width && !(fabsf (field[start]) >= least); start++)
+        ;
+      if (least > 0.0f)
+        for (guint j = end = start; j < box->width && j < end + GAP; j++)
+          if (fabsf (field[j]) >= least)
+            end = j + 1;
+      if (start < end)
+        tf_geometry_row_sun (g, y + 1.0, box->x0 + start + 1.0, end - start, row->unit + start, row->mu + start,
+                             row->area + start);
+      end = MAX (end, start);
+    }
+}
+
 /* Puts the columns that come into question to the front. @least > 0: weaker pixels, and those without a value, are passed
  * over. */
 static guint
@@ -99,7 +120,7 @@ choose_columns (const Row *row, const float *field, guint width, double mu_min, 
   guint n = 0;
   for (guint k = 0; k < width; k++)
     {
-      if (!(map || row->mu[k] >= mu_min) || (least > 0.0f && !(fabsf (field[k]) >= least)))
+      if ((least > 0.0f && !(fabsf (field[k]) >= least)) || !(map || row->mu[k] >= mu_min))
         continue;
       if (n < k)
         memcpy (row->unit[n], row->unit[k], sizeof (Unit));
@@ -117,9 +138,7 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
   gboolean map = tf_geometry_is_map (g);
   const float *field
       = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
-  if (least > 0.0f && count_above (field, box->width, least) == 0)
-    return;
-  tf_geometry_row_sun (g, y + 1.0, box->x0 + 1.0, box->width, row->unit, row->mu, row->area);
+  find_places (g, box, y, field, least, row);
   guint n = choose_columns (row, field, box->width, mu_min, least, map);
   tf_fill_row (fill, (const Unit *)row->unit, n, row->inside);
   for (guint j = 0; j < n; j++)
