@@ -18,6 +18,7 @@ static const double SAMPLE_MM = 3.0;
 static const double OVERLAP = 0.65;
 static const double ELIGIBLE_MX = 1e21, ELIGIBLE_MU = 0.4;
 static const double HALF = 0.5, FALSE_SHARE = 0.28, SHARED = 0.2, JOINED = 0.25;
+static const double TELL_TILT = 3.0;
 
 static TfTime
 disk_time (void)
@@ -338,6 +339,11 @@ score_found (MadeScore *score, const MadeSource *source, const TfHint *hint)
 {
   double error = fabs (remainder (hint->measure.axis_bearing_deg - source->bearing, 180.0));
   score->found++;
+  if (error > TELL_TILT)
+    g_test_message ("  tilt off by %.1f: N%+.1f W%+.1f flux %.2e (measured %.2e, imbalance %+.2f) separation %.0f Mm, tilt's own "
+                    "uncertainty %.1f",
+                    error, source->lat_deg, source->cmd_deg, source->flux, hint->measure.flux_unsigned_mx,
+                    hint->measure.imbalance, hint->measure.separation_mm, hint->measure.tilt_terms.total);
   score->wrong_polarity += hint->measure.leading_polarity != source->leading;
   g_array_append_val (score->tilt_errors, error);
 }

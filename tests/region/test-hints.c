@@ -9,5 +9,6 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   add_hint_built_tests ();
   add_hint_real_tests ();
+  add_hint_simulated_tests ();
   return g_test_run ();
 }
