@@ -149,11 +149,19 @@ gboolean
 tf_session_set_note (TfSession *self, const char *text)
 {
   g_return_val_if_fail (TF_IS_SESSION (self) && text != NULL, FALSE);
-  if (!tf_session_can_describe (self) || strcmp (chosen_row (self)->note, text) == 0
+  return tf_session_can_describe (self) && tf_session_set_note_of (self, self->region, text);
+}
+
+gboolean
+tf_session_set_note_of (TfSession *self, TfRegionItem *region, const char *text)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && TF_IS_REGION_ITEM (region) && text != NULL, FALSE);
+  const TfRow *row = tf_region_item_get_row (region);
+  if (!tf_session_is_writable (self) || row->is_hint || strcmp (row->note, text) == 0
       || !has_person (self))
     return FALSE;
   TfDeed *deed = deed_new (self, TF_DEED_NOTE);
-  deed->region = chosen_row (self)->region_key;
+  deed->region = row->region_key;
   deed->text = g_strdup (text);
   return push (self, deed);
 }

@@ -152,6 +152,8 @@ gboolean tf_session_can_withdraw (TfSession *session);
 gboolean tf_session_withdraw (TfSession *session);
 gboolean tf_session_can_describe (TfSession *session); /* note and class: a mark is chosen */
 gboolean tf_session_set_note (TfSession *session, const char *text);
+/** tf_session_set_note_of: the note of a mark that need not be the chosen one any more. */
+gboolean tf_session_set_note_of (TfSession *session, TfRegionItem *region, const char *text);
 gboolean tf_session_set_class (TfSession *session, const char *text);
 gboolean tf_session_can_undo (TfSession *session);
 gboolean tf_session_undo (TfSession *session);

@@ -29,6 +29,7 @@ struct _TfSlip
   TfSlipFrame *frame_page;
   TfSession *session;
   TfRegionItem *noted; /* whose note stands in the entry */
+  char *note_given;    /* what was already given to be kept for it, or NULL */
   gboolean setting;
   char *joy_name; /* under the dial */
 };
@@ -211,15 +212,45 @@ dup_note (TfSlip *self)
   return gtk_text_buffer_get_text (buffer, &start, &end, FALSE);
 }
 
-/* What stands in the note is kept for the region it was written for, also when another region is
- * chosen first. */
+/* What stands in the note is kept for the region it was written for, also when another region, or
+ * none, is chosen first; once, however often the entry is left before it is in the ledger. */
 static void
 leave_note (TfSlip *self)
 {
-  if (self->noted == NULL || self->noted != tf_session_get_region (self->session))
+  if (self->noted == NULL || self->session == NULL)
     return;
-  g_autofree char *text = dup_note (self);
-  tf_session_set_note (self->session, g_strstrip (text));
+  g_autofree char *text = g_strstrip (dup_note (self));
+  if (g_strcmp0 (text, self->note_given) == 0)
+    return;
+  if (tf_session_set_note_of (self->session, self->noted, text))
+    {
+      g_free (self->note_given);
+      self->note_given = g_steal_pointer (&text);
+    }
+}
+
+static void
+show_note (TfSlip *self, TfRegionItem *region)
+{
+  const TfRow *row = tf_region_item_get_row (region);
+  gboolean same = self->noted != NULL && tf_region_item_is (self->noted, row->mark, row->is_hint);
+  if (!same)
+    leave_note (self);
+  g_set_object (&self->noted, region);
+  if (same && gtk_widget_has_focus (GTK_WIDGET (self->note)))
+    return; /* someone is writing */
+  g_clear_pointer (&self->note_given, g_free);
+  g_autofree char *now = dup_note (self);
+  if (strcmp (now, row->note) != 0)
+    gtk_text_buffer_set_text (gtk_text_view_get_buffer (self->note), row->note, -1);
+}
+
+static void
+forget_note (TfSlip *self)
+{
+  leave_note (self);
+  g_clear_object (&self->noted);
+  g_clear_pointer (&self->note_given, g_free);
 }
 
 static void
@@ -229,18 +260,13 @@ show_judged (TfSlip *self, TfRegionItem *region, gboolean drawing)
   gtk_widget_set_visible (self->judged, mark);
   if (!mark)
     {
-      g_clear_object (&self->noted);
+      forget_note (self);
       return;
     }
   const TfRow *row = tf_region_item_get_row (region);
   self->setting = TRUE;
   show_class (self, row->mw_class);
-  gboolean writing = gtk_widget_has_focus (GTK_WIDGET (self->note)) && self->noted != NULL
-                     && tf_region_item_is (self->noted, row->mark, row->is_hint);
-  g_set_object (&self->noted, region);
-  g_autofree char *now = dup_note (self);
-  if (!writing && strcmp (now, row->note) != 0)
-    gtk_text_buffer_set_text (gtk_text_view_get_buffer (self->note), row->note, -1);
+  show_note (self, region);
   self->setting = FALSE;
 }
 
@@ -256,7 +282,7 @@ choice_changed (TfSlip *self)
   TfRegionItem *region = tf_session_get_region (self->session);
   if (!drawing && region == NULL)
     {
-      g_clear_object (&self->noted);
+      forget_note (self);
       gtk_stack_set_visible_child_name (self->stack, "frame");
       return;
     }
@@ -298,9 +324,11 @@ static gboolean
 note_key (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
           TfSlip *self)
 {
-  if (key != GDK_KEY_Return || (state & GDK_CONTROL_MASK) == 0)
+  if (key != GDK_KEY_Escape && (key != GDK_KEY_Return || (state & GDK_CONTROL_MASK) == 0))
     return FALSE;
   leave_note (self);
+  if (key == GDK_KEY_Escape) /* out of the note; a second Escape unchooses the region */
+    gtk_root_set_focus (gtk_widget_get_root (GTK_WIDGET (self)), NULL);
   return TRUE;
 }
 
@@ -333,6 +361,7 @@ static void
 finalize (GObject *object)
 {
   g_free (TF_SLIP (object)->joy_name);
+  g_free (TF_SLIP (object)->note_given);
   G_OBJECT_CLASS (tf_slip_parent_class)->finalize (object);
 }
 

@@ -308,6 +308,7 @@ static gboolean
 close_request (GtkWindow *window)
 {
   TfWindow *self = TF_WINDOW (window);
+  gtk_window_set_focus (window, NULL); /* a note under the pen is kept */
   if (tf_session_get_problem (self->session) == NULL)
     return FALSE; /* deeds on their way are waited for by the session */
   GtkWidget *dialog = adw_message_dialog_new (window, _ ("Close without saving?"),

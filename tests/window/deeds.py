@@ -85,6 +85,42 @@ def _(given):
         check(given, ledger)
 
 
+@scenario("a note typed in the slip is kept by Escape, by choosing nothing, and by closing the window")
+def _(given):
+    newest = "SELECT text FROM note ORDER BY clock DESC LIMIT 1"
+    with tempfile.TemporaryDirectory(prefix="tiltfield-note-") as folder:
+        ledger = filled(given, folder, 9)
+        with Window(given, [ledger]) as w:
+            keep_one(w, ledger)
+            w.click_on(w.find("Note", "text"))
+            w.wait("the note to have the focus", lambda: w.focused_name() == "Note")
+            w.type("watch")
+            w.key("Escape")
+            w.wait_value("the note after Escape", ledger, newest, "watch")
+            if "chosen: 0" not in w.plate():
+                raise Failed(f"Escape in the note unchose the region: {w.plate()}")
+            w.click_on(w.find("Note", "text"))
+            w.wait("the note to have the focus", lambda: w.focused_name() == "Note")
+            w.key("End")
+            w.type(" this")
+            w.action("cancel-drawing")
+            w.wait("nothing to be chosen", lambda: "chosen" not in w.plate())
+            w.wait_value("the note after choosing nothing", ledger, newest, "watch this")
+            w.action("next-hint")
+            w.wait("a hint to be chosen", lambda: "chosen: hint" in w.plate())
+            w.action("keep")
+            w.wait_value("marks in the ledger", ledger, MARKS, 2)
+            w.wait("the mark to be the chosen one", lambda: "chosen: 0" in w.plate())
+            w.click_on(w.find("Note", "text"))
+            w.wait("the note to have the focus", lambda: w.focused_name() == "Note")
+            w.type("at the end")
+            w.key("ctrl+q")
+            w.program.wait(30)
+            if w.value(ledger, newest) != "at the end":
+                raise Failed(f"the note under the pen was not kept on closing: {w.value(ledger, newest)!r}")
+        check(given, ledger)
+
+
 @scenario("a polygon is drawn corner by corner, one corner taken back, and kept as a mark")
 def _(given):
     with tempfile.TemporaryDirectory(prefix="tiltfield-polygon-") as folder:
