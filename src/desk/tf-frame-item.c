@@ -3,6 +3,7 @@
  */
 #include "tf-frame-item.h"
 
+#include <string.h>
 #include <glib/gi18n-lib.h>
 
 struct _TfFrameItem
@@ -124,23 +125,35 @@ tf_frame_item_dup_time (TfFrameItem *self)
   return g_strdup_printf ("%02d:%02d", hour, minute);
 }
 
+/* Frames of one time from several places are told apart by it. */
+static void
+append_vantage (GString *text, const TfFrameInfo *info)
+{
+  if (tf_geometry_is_map (&info->geometry))
+    return;
+  g_autofree char *vantage = tf_observer_dup_vantage (&info->geometry.observer);
+  if (strcmp (vantage, "earth") != 0 && strcmp (vantage, "unknown") != 0)
+    g_string_append_printf (text, _ ("\nfrom %s"), vantage);
+}
+
 char *
 tf_frame_item_dup_counts (TfFrameItem *self)
 {
   const TfFrameRow *row = self->row;
   if (row->refusal != NULL)
     return g_strdup (_ ("refused"));
-  if (row->n_marks == 0 && row->n_hints == 0)
-    return g_strdup (row->done ? _ ("nothing found") : "—");
   GString *text = g_string_new (NULL);
+  if (row->n_marks == 0 && row->n_hints == 0)
+    g_string_append (text, row->done ? _ ("nothing found") : "—");
   if (row->n_marks > 0)
     g_string_append_printf (text, ngettext ("%u mark", "%u marks", row->n_marks), row->n_marks);
   if (row->n_marks > 0 && row->n_hints > 0)
     g_string_append (text, "\n");
   if (row->n_hints > 0)
     g_string_append_printf (text, ngettext ("%u hint", "%u hints", row->n_hints), row->n_hints);
-  if (row->n_hints == 0)
+  if (row->n_marks > 0 && row->n_hints == 0)
     g_string_append_printf (text, "\n%s", _ ("done"));
+  append_vantage (text, row->info);
   return g_string_free (text, FALSE);
 }
 

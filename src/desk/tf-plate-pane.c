@@ -97,6 +97,8 @@ frame_changed (TfPlatePane *self)
 {
   TfFrameItem *item = tf_session_get_frame_item (self->session);
   const char *problem = tf_session_get_frame_problem (self->session);
+  if (item != NULL && problem != NULL && tf_frame_item_get_row (item)->refusal != NULL)
+    problem = tf_frame_item_get_row (item)->refusal; /* without the path */
   const char *text
       = item == NULL ? _ ("Choose a frame in the roll, or drop frames here.") : problem;
   gboolean open = tf_session_get_frame (self->session) != NULL;

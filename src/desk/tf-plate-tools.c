@@ -12,6 +12,7 @@
 enum
 {
   CLICK_SLACK = 4,
+  CORNER_SLACK = 12, /* a quick hand sets corners while it moves */
   KEY_STEP = 40,
   KEY_POINTER = 8,
   KEY_FINE = 1
@@ -108,7 +109,8 @@ drag_update (GtkGestureDrag *gesture, double dx, double dy, TfPlate *self)
 {
   double x, y;
   gtk_gesture_drag_get_start_point (gesture, &x, &y);
-  if (!self->moved && hypot (dx, dy) < CLICK_SLACK && !is_drawing (self))
+  gboolean corner = self->session != NULL && tf_session_get_tool (self->session) == TF_TOOL_POLYGON;
+  if (!self->moved && hypot (dx, dy) < (corner ? CORNER_SLACK : CLICK_SLACK) && !is_drawing (self))
     return;
   self->moved = TRUE;
   gboolean middle

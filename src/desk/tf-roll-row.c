@@ -57,9 +57,10 @@ show (TfRollRow *self)
   gtk_widget_set_visible (GTK_WIDGET (self->day), day != NULL);
   gtk_label_set_label (self->day, day != NULL ? day : "");
   gtk_label_set_label (self->time, time);
-  const char *refusal = tf_frame_item_get_row (self->item)->refusal;
+  const TfFrameRow *row = tf_frame_item_get_row (self->item);
+  const char *refusal
+      = row->info->role == TF_ROLE_INTENSITY ? _ ("intensity picture") : row->refusal;
   gtk_label_set_label (self->counts, refusal != NULL ? refusal : counts);
-  gtk_label_set_lines (self->counts, refusal != NULL ? 3 : 2);
   gtk_picture_set_paintable (self->picture,
                              GDK_PAINTABLE (tf_frame_item_get_thumbnail (self->item)));
   show_state (self);

@@ -4,6 +4,7 @@
 #include "tf-slip-frame.h"
 
 #include <math.h>
+#include <string.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-slip-words.h"
@@ -55,14 +56,16 @@ dup_facts (const TfFrameRow *row, TfFrame *frame)
                             info->geometry.height);
   if (isfinite (info->geometry.observer.b0_deg) && !tf_geometry_is_map (&info->geometry))
     {
-      g_autofree char *vantage = tf_observer_dup_vantage (&info->geometry.observer);
+      g_autofree char *code = tf_observer_dup_vantage (&info->geometry.observer);
+      const char *vantage = strcmp (code, "earth") == 0 ? _ ("the Earth") : code;
       g_autofree char *b0 = tf_words_dup_signed (info->geometry.observer.b0_deg, 2);
       g_autofree char *l0 = tf_words_dup_number (info->geometry.observer.carrington_lon_deg, 1);
       g_string_append_printf (text, _ ("\nseen from %s · B0 %s° · L0 %s°"), vantage, b0, l0);
     }
   static const char *const fields[]
       = { N_ ("field of unknown direction"), N_ ("line-of-sight field"), N_ ("radial field") };
-  g_string_append_printf (text, "\n%s", _ (fields[info->field]));
+  if (info->role == TF_ROLE_FIELD)
+    g_string_append_printf (text, "\n%s", _ (fields[info->field]));
   append_noise (text, frame);
   if (info->simulated)
     g_string_append (text, _ ("\nsimulated: an invented Sun"));
@@ -114,7 +117,9 @@ show (TfSlipFrame *self)
   g_autofree char *facts = dup_facts (row, frame);
   gtk_label_set_label (self->title, time != NULL ? time : _ ("time unknown"));
   gtk_label_set_label (self->facts, facts);
-  gtk_label_set_label (self->next, frame != NULL ? next_step (self) : "");
+  gtk_label_set_label (self->next, row->refusal != NULL ? row->refusal
+                                   : frame != NULL      ? next_step (self)
+                                                        : "");
   set_section (self->cautions_box, self->cautions,
                dup_sentences (frame != NULL ? tf_frame_get_cautions (frame) : row->info->cautions));
   set_section (self->repairs_box, self->repairs, dup_sentences (row->info->repairs));

@@ -241,7 +241,7 @@ under_tilt (const TfReading *r)
       g_autofree char *e = tf_words_dup_signed (expected, 0), *s = tf_words_dup_number (scatter, 0);
       g_string_append_printf (text, _ ("expected %s° ± %s° (Joy)\n"), e, s);
     }
-  g_string_append_printf (text, _ ("noise %s, outline %s, floor %s"), noise, outline, floor);
+  g_string_append_printf (text, _ ("noise %s, outline %s, floor %s"), noise, outline, floor);
   return g_string_free (text, FALSE);
 }
 

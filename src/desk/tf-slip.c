@@ -160,7 +160,7 @@ show_cautions (TfSlip *self, const TfMeasure *m)
   for (guint k = 0; k < tf_notes_get_n (m->cautions); k++)
     {
       g_autofree char *sentence = tf_note_dup_text (tf_notes_get (m->cautions, k), FALSE);
-      g_string_append_printf (text, "%s%s", k > 0 ? "\n" : "", sentence);
+      g_string_append_printf (text, "%s%s", k > 0 ? "\n\n" : "", sentence);
     }
   set_label (self->cautions, text->str);
   g_string_free (text, TRUE);

@@ -167,6 +167,17 @@ tf_window_open_demo (TfWindow *self)
 
 /* -- frames ---------------------------------------------------------------------------------- */
 
+static void
+begin_where_frames_lie (TfWindow *self, GtkFileChooser *chooser)
+{
+  TfFrameItem *item = tf_session_get_frame_item (tf_window_get_session (self));
+  if (item == NULL)
+    return;
+  g_autofree char *folder = g_path_get_dirname (tf_frame_item_get_row (item)->path);
+  g_autoptr (GFile) file = g_file_new_for_path (folder);
+  gtk_file_chooser_set_current_folder (chooser, file, NULL);
+}
+
 void
 tf_window_choose_frames (TfWindow *self)
 {
@@ -176,6 +187,7 @@ tf_window_choose_frames (TfWindow *self)
       = chooser_new (self, _ ("Add frames"), GTK_FILE_CHOOSER_ACTION_OPEN, _ ("_Add"));
   gtk_file_chooser_set_select_multiple (GTK_FILE_CHOOSER (chooser), TRUE);
   add_filter (chooser, _ ("FITS frames"), endings);
+  begin_where_frames_lie (self, GTK_FILE_CHOOSER (chooser));
   g_signal_connect_object (chooser, "response", G_CALLBACK (files_chosen), self, 0);
   gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));
 }
@@ -255,8 +267,8 @@ tf_window_ask_person (TfWindow *self, const char *then)
 static const char *
 cautions_text (void)
 {
-  return _ ("Complexity figures are not in this version. When they are, they describe the field "
-            "and are no flare forecast: "
+  return _ ("Complexity figures (tiltfield-run measure gives them) describe the field and are no "
+            "flare forecast: "
             "operational decisions (aviation, power grid, crewed flight, satellites) rest with the "
             "responsible national "
             "space-weather service and licensed staff.\n\n"

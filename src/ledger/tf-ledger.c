@@ -247,7 +247,8 @@ make_file (const char *path, const TfLedgerHow *how, GError **error)
     return TRUE; /* opens for reading */
   g_set_error (error, TF_LEDGER_ERROR,
                why == ENOSPC ? TF_LEDGER_ERROR_FULL : TF_LEDGER_ERROR_OPEN,
-               _ ("the ledger %s cannot be made: %s. Choose a folder that is there, may be written to and has room"),
+               _ ("the ledger %s cannot be made: %s. Choose a folder that is there, may be "
+                  "written to and has room"),
                path, g_strerror (why));
   return FALSE;
 }
