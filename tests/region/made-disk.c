@@ -241,7 +241,8 @@ made_disk_new (const MadePlan *plan, guint32 seed)
     add_bipole (disk, plan, l0, rand);
   for (guint k = 0; k < plan->plages; k++)
     add_plage (disk, plan, l0, rand);
-  tf_sun_add_network (disk->sun, NETWORK, NETWORK_MX);
+  if (!plan->bare)
+    tf_sun_add_network (disk->sun, NETWORK, NETWORK_MX);
   return disk;
 }
 

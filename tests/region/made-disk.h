@@ -48,6 +48,7 @@ typedef struct
   double closest;   /* bipoles keep this share of the sum of their half lengths apart ... */
   double may_share; /* ... but for this share of them, which may come within half of that */
   gboolean gathered; /* in few places */
+  gboolean bare;     /* no network */
 } MadePlan;
 
 /** MadeScore: sums over disks. Eligible: bipoles over 1e21 Mx unsigned with mu > 0.4 that the frame shows whole. */
