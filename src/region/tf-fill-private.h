@@ -26,6 +26,9 @@ void tf_fill_free (TfFill *fill);
 gboolean tf_fill_contains (const TfFill *fill, const double unit[3]);
 /** tf_fill_row: the same for @n points; @inside gets 1 and 0. */
 void tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside);
+/** tf_fill_columns: the same where the three parts of the vectors stand in columns of their own. */
+void tf_fill_columns (const TfFill *fill, const double *x, const double *y, const double *z,
+                      guint n, guint8 *inside);
 /**
  * tf_fill_sample: @n x @n points spread over the outline's box; calls @func for those inside.
  * @weight: solid angle that the point stands for, in units of its cell.

@@ -9,6 +9,7 @@
 
 enum
 {
+  CHUNK = 256,
   CELLS = 160,  /* of the grid, a side */
   MAX_BITS = 63 /* left-out rings told apart */
 };
@@ -254,17 +255,25 @@ tf_fill_contains (const TfFill *fill, const double unit[3])
   return cell == CELL_INSIDE;
 }
 
-/* Where in the grid each point of a row lies; a point that the plane does not hold, or that is
- * none, lies outside. */
-__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-find_cells (const TfFill *fill, const double (*unit)[3], guint n, float *column, float *row)
+/* Points to be asked for: each part of theirs @stride apart. */
+typedef struct
+{
+  const double *x, *y, *z;
+  guint stride;
+} Points;
+
+/* Where in the grid each point lies; a point that the plane does not hold, or that is none, lies
+ * outside. */
+static inline void
+find_cells (const TfFill *fill, const Points *p, guint stride, guint n, float *column, float *row)
 {
   const double *w = fill->west, *m = fill->north, *c = fill->centre;
+  const double *px = p->x, *py = p->y, *pz = p->z;
   double su = 1.0 / fill->u_step, sv = 1.0 / fill->v_step, u0 = -fill->u_min * su,
          v0 = -fill->v_min * sv;
   for (guint k = 0; k < n; k++)
     {
-      double x = unit[k][0], y = unit[k][1], z = unit[k][2];
+      double x = px[k * stride], y = py[k * stride], z = pz[k * stride];
       double along = x * c[0] + y * c[1] + z * c[2],
              over = along > 0.05 ? 1.0 / along : (double)NAN;
       column[k] = (float)((x * w[0] + y * w[1] + z * w[2]) * over * su + u0);
@@ -272,19 +281,36 @@ find_cells (const TfFill *fill, const double (*unit)[3], guint n, float *column,
     }
 }
 
+/* The stride is known where it is one of these, so that both run on vectors. */
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+find_cells_apart (const TfFill *fill, const Points *p, guint n, float *column, float *row)
+{
+  find_cells (fill, p, 1, n, column, row);
+}
+
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+find_cells_together (const TfFill *fill, const Points *p, guint n, float *column, float *row)
+{
+  find_cells (fill, p, 3, n, column, row);
+}
+
+static gboolean
+contains_point (const TfFill *fill, const Points *p, gsize k)
+{
+  const double unit[3] = { p->x[k * p->stride], p->y[k * p->stride], p->z[k * p->stride] };
+  return tf_fill_contains (fill, unit);
+}
+
 /* A float's place is off by less than 1e-4 of a cell: mixed cells have a cell to spare on each
  * side. */
-void
-tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside)
+static void
+ask_some (const TfFill *fill, const Points *p, guint n, guint8 *inside)
 {
-  if (!fill->plane)
-    {
-      for (guint k = 0; k < n; k++)
-        inside[k] = tf_fill_contains (fill, unit[k]) ? 1 : 0;
-      return;
-    }
-  g_autofree float *column = g_new (float, MAX (n, 1)), *row = g_new (float, MAX (n, 1));
-  find_cells (fill, unit, n, column, row);
+  float column[CHUNK], row[CHUNK];
+  if (p->stride == 1)
+    find_cells_apart (fill, p, n, column, row);
+  else
+    find_cells_together (fill, p, n, column, row);
   for (guint k = 0; k < n; k++)
     {
       float c = column[k], r = row[k];
@@ -293,10 +319,42 @@ tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *insid
         continue;
       guint8 cell = fill->cell[(guint)r][(guint)c];
       if (cell == CELL_MIXED)
-        inside[k] = tf_fill_contains (fill, unit[k]) ? 1 : 0;
+        inside[k] = contains_point (fill, p, k) ? 1 : 0;
       else
         inside[k] = cell == CELL_INSIDE;
     }
+}
+
+static void
+ask (const TfFill *fill, const Points *points, guint n, guint8 *inside)
+{
+  for (guint first = 0; first < n; first += CHUNK)
+    {
+      gsize at = (gsize)first * points->stride;
+      Points p = { points->x + at, points->y + at, points->z + at, points->stride };
+      guint some = MIN (CHUNK, n - first);
+      if (fill->plane)
+        ask_some (fill, &p, some, inside + first);
+      else
+        for (guint k = 0; k < some; k++)
+          inside[first + k] = contains_point (fill, &p, k) ? 1 : 0;
+    }
+}
+
+void
+tf_fill_row (const TfFill *fill, const double (*unit)[3], guint n, guint8 *inside)
+{
+  const double *first = &unit[0][0];
+  Points points = { first, first + 1, first + 2, 3 };
+  ask (fill, &points, n, inside);
+}
+
+void
+tf_fill_columns (const TfFill *fill, const double *x, const double *y, const double *z, guint n,
+                 guint8 *inside)
+{
+  Points points = { x, y, z, 1 };
+  ask (fill, &points, n, inside);
 }
 
 /* The whole sphere by rows of latitude, for outlines too large for the plane. */

@@ -16,7 +16,6 @@
 
 #include <math.h>
 #include <stdlib.h>
-#include <string.h>
 
 #include "tf-constants.h"
 #include "tf-fill-private.h"
@@ -25,7 +24,7 @@
 enum
 {
   DEFORMATIONS = 16,
-  LANES = 8,
+  LANES = 4,
 };
 /* Shifts and harmonics together move no point by more amplitudes than this. */
 static const double REACH = 2.3;
@@ -124,26 +123,11 @@ middle_distance (const double values[DEFORMATIONS])
   return 1.2011 * median (copy, DEFORMATIONS);
 }
 
-typedef double Unit[3];
-
-/* What TfSum adds up, of one pixel. */
-typedef enum
-{
-  OF_FLUX,
-  OF_X,
-  OF_Y,
-  OF_Z,
-  OF_AREA,
-  OF_AREA_Z,
-  N_OF
-} Of;
-
 /* The pixels above the floor of all deformations together: the positive ones, then the negative. */
 typedef struct
 {
   guint n, n_positive;
-  Unit *unit;
-  double *of[N_OF];
+  double *x, *y, *z, *flux, *area;
   guint8 *inside;
 } Kept;
 
@@ -158,24 +142,26 @@ static void
 keep_pixel (Kept *kept, const TfMaskPixel *pixel, double flux)
 {
   guint n = kept->n++;
-  memcpy (kept->unit[n], pixel->unit, sizeof (Unit));
-  kept->of[OF_FLUX][n] = flux;
-  kept->of[OF_X][n] = flux * pixel->unit[0];
-  kept->of[OF_Y][n] = flux * pixel->unit[1];
-  kept->of[OF_Z][n] = flux * pixel->unit[2];
-  kept->of[OF_AREA][n] = pixel->area_mm2;
-  kept->of[OF_AREA_Z][n] = pixel->area_mm2 * pixel->unit[2];
+  kept->x[n] = pixel->unit[0];
+  kept->y[n] = pixel->unit[1];
+  kept->z[n] = pixel->unit[2];
+  kept->flux[n] = flux;
+  kept->area[n] = pixel->area_mm2;
 }
 
 static void
 keep_pixels (Kept *kept, const TfRegionSamples *samples)
 {
-  gsize most = 0;
+  gsize most = 1;
   for (guint k = 0; k < samples->n; k++)
     most += fabsf (samples->samples[k].field) >= samples->samples[k].floor;
-  *kept = (Kept){ .unit = g_new (Unit, MAX (most, 1)), .inside = g_new (guint8, MAX (most, 1)) };
-  for (guint i = 0; i < N_OF; i++)
-    kept->of[i] = g_new (double, MAX (most, 1));
+  double *room = g_new (double, 5 * most);
+  *kept = (Kept){ .x = room,
+                  .y = room + most,
+                  .z = room + 2 * most,
+                  .flux = room + 3 * most,
+                  .area = room + 4 * most,
+                  .inside = g_new (guint8, most) };
   for (guint sign = 0; sign < 2; sign++)
     {
       for (guint k = 0; k < samples->n; k++)
@@ -190,48 +176,64 @@ keep_pixels (Kept *kept, const TfRegionSamples *samples)
 static void
 close_kept (Kept *kept)
 {
-  g_free (kept->unit);
+  g_free (kept->x);
   g_free (kept->inside);
-  for (guint i = 0; i < N_OF; i++)
-    g_free (kept->of[i]);
 }
 
-/* Sum of the values inside, in lanes that are added up in order. */
-__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static double
-add_inside (const double *values, const guint8 *inside, guint n)
+/* Sums in lanes that are added up in order. */
+typedef struct
 {
-  double lanes[LANES] = { 0 }, sum = 0.0;
-  guint k = 0;
-  for (; k + LANES <= n; k += LANES)
+  double flux[LANES], x[LANES], y[LANES], z[LANES], area[LANES], area_z[LANES];
+} Lanes;
+
+static inline void
+add_lane (Lanes *lanes, guint l, const Kept *kept, guint k)
+{
+  double flux = kept->flux[k] * kept->inside[k], area = kept->area[k] * kept->inside[k];
+  lanes->flux[l] += flux;
+  lanes->x[l] += flux * kept->x[k];
+  lanes->y[l] += flux * kept->y[k];
+  lanes->z[l] += flux * kept->z[k];
+  lanes->area[l] += area;
+  lanes->area_z[l] += area * kept->z[k];
+}
+
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
+fill_lanes (Lanes *out, const Kept *kept, guint first, guint end)
+{
+  Lanes lanes = { 0 };
+  guint k = first;
+  for (; k + LANES <= end; k += LANES)
     for (guint l = 0; l < LANES; l++)
-      lanes[l] += values[k + l] * inside[k + l];
-  for (; k < n; k++)
-    lanes[0] += values[k] * inside[k];
-  for (guint l = 0; l < LANES; l++)
-    sum += lanes[l];
-  return sum;
+      add_lane (&lanes, l, kept, k + l);
+  for (; k < end; k++)
+    add_lane (&lanes, 0, kept, k);
+  *out = lanes;
 }
 
 static void
 sum_sign (const Kept *kept, guint first, guint end, TfSum *sum)
 {
-  const guint8 *inside = kept->inside + first;
-  guint n = end - first;
-  for (guint k = 0; k < n; k++)
-    sum->n += inside[k];
-  sum->flux = add_inside (kept->of[OF_FLUX] + first, inside, n);
-  sum->sum[0] = add_inside (kept->of[OF_X] + first, inside, n);
-  sum->sum[1] = add_inside (kept->of[OF_Y] + first, inside, n);
-  sum->sum[2] = add_inside (kept->of[OF_Z] + first, inside, n);
-  sum->area = add_inside (kept->of[OF_AREA] + first, inside, n);
-  sum->area_z = add_inside (kept->of[OF_AREA_Z] + first, inside, n);
+  Lanes lanes;
+  fill_lanes (&lanes, kept, first, end);
+  for (guint l = 0; l < LANES; l++)
+    {
+      sum->flux += lanes.flux[l];
+      sum->sum[0] += lanes.x[l];
+      sum->sum[1] += lanes.y[l];
+      sum->sum[2] += lanes.z[l];
+      sum->area += lanes.area[l];
+      sum->area_z += lanes.area_z[l];
+    }
+  for (guint k = first; k < end; k++)
+    sum->n += kept->inside[k];
 }
 
 static void
 sum_inside (const Kept *kept, const TfOutline *outline, TfSum sums[2])
 {
   g_autoptr (TfFill) fill = tf_fill_new (outline);
-  tf_fill_row (fill, (const Unit *)kept->unit, kept->n, kept->inside);
+  tf_fill_columns (fill, kept->x, kept->y, kept->z, kept->n, kept->inside);
   sum_sign (kept, 0, kept->n_positive, &sums[TF_POSITIVE]);
   sum_sign (kept, kept->n_positive, kept->n, &sums[TF_NEGATIVE]);
 }

@@ -184,17 +184,13 @@ sine_mean (const TfSum sums[2])
 
 static void
 find_terms (Terms *terms, TfMeasure *m, const TfRegionSamples *samples, const TfSums *sums,
-            const TfAxis *axis, const TfOutline *outline, const TfPotential *potential)
+            const TfAxis *axis, const TfOutline *outline)
 {
-  const TfMeasureParams *p = samples->params;
-  set_nothing (&terms->outline);
   tf_region_noise (samples, axis, sine_mean (sums->at[TF_LEVEL_BASE]), &terms->noise,
                    &m->noise_flux_mx);
-  if (p->realisations > 1)
+  if (samples->params->realisations > 1)
     tf_region_realise (samples, outline, &terms->noise);
   m->leader_flips = tf_region_floor_term (samples, sums, axis, outline, &terms->floor);
-  if (p->outline_term && outline != NULL)
-    tf_region_outline_term (samples->frame, outline, p, potential, &terms->outline);
 }
 
 static gboolean
@@ -221,7 +217,6 @@ static void
 measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline *outline,
          const TfMeasureParams *params, const TfPotential *potential, int spot_witness)
 {
-  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
   double radius = tf_frame_get_geometry (frame)->radius_mm;
   gboolean circle = params->tilt_form == 1;
   TfSums sums;
@@ -229,6 +224,10 @@ measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline
   TfPieces pieces;
   Terms terms;
   const TfSum *base = sums.at[TF_LEVEL_BASE];
+  set_nothing (&terms.outline);
+  if (params->outline_term && outline != NULL) /* first, so that not all pixels are held at once */
+    tf_region_outline_term (frame, outline, params, potential, &terms.outline);
+  g_autoptr (TfRegionSamples) samples = tf_region_samples_new (frame, mask, params, potential);
   m->cautions = tf_notes_new ();
   set_method (m, samples);
   tf_region_sums (samples, &sums);
@@ -236,7 +235,7 @@ measure (TfMeasure *m, const TfFrame *frame, const TfMask *mask, const TfOutline
   tf_region_pieces (samples, axis.flux[0] + axis.flux[1], &pieces);
   if (spot_witness != TF_WITNESS_ABSENT)
     pieces.witness = spot_witness;
-  find_terms (&terms, m, samples, &sums, &axis, outline, potential);
+  find_terms (&terms, m, samples, &sums, &axis, outline);
   m->pieces = pieces.n;
   set_pole (&m->positive, frame, &axis, TF_POSITIVE, &base[TF_POSITIVE], &terms);
   set_pole (&m->negative, frame, &axis, TF_NEGATIVE, &base[TF_NEGATIVE], &terms);
