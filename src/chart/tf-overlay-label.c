@@ -66,6 +66,8 @@ draw_label (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
   if (breaks)
     {
       TfChartStyle over = tf_chart_style (overlay->on_dark, style->contrast, style->text_pt);
+      over.slate = tf_overlay_line_colour (overlay, style, item); /* a rim, else only the stroke shows */
+      tf_chart_diamond (cr, &over, x + radius, y, radius + 1.5, TF_DIAMOND_PLAIN);
       tf_chart_diamond (cr, &over, x + radius, y, radius, TF_DIAMOND_STRUCK);
       x += 2 * radius + GAP;
     }
