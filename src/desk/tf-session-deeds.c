@@ -291,7 +291,10 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
   else if (deed->kind == TF_DEED_DROP)
     self->want_next_hint = TRUE;
   else if (deed->kind == TF_DEED_UNDO || deed->kind == TF_DEED_REDO)
-    say_undone (self, deed);
+    {
+      self->want_new = TRUE;
+      say_undone (self, deed);
+    }
   g_free (self->saved);
   self->saved = g_strdup (_ ("saved"));
   tf_session_refresh (self, deed->kind == TF_DEED_UNDO || deed->kind == TF_DEED_REDO);

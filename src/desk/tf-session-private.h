@@ -78,6 +78,7 @@ struct _TfSession
   gint64 want_mark; /* to be chosen when it comes; 0 */
   gboolean want_hint;
   gboolean want_next_hint;
+  gboolean want_new; /* what undoing or redoing brings back is chosen */
 
   TfTool tool;
   GArray *line; /* TfVertex, Carrington */

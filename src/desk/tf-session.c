@@ -196,11 +196,24 @@ find_choice (TfSession *self, gint64 mark, gboolean is_hint)
   return NULL;
 }
 
-static void
-choose_again (TfSession *self)
+/* The first of @items that the list does not hold. */
+static TfRegionItem *
+find_new (TfSession *self, const GPtrArray *items)
 {
-  TfRegionItem *next = NULL;
-  if (self->want_mark != 0)
+  for (guint k = 0; k < items->len; k++)
+    {
+      const TfRow *row = tf_region_item_get_row (items->pdata[k]);
+      if (find_choice (self, row->mark, row->is_hint) == NULL)
+        return items->pdata[k];
+    }
+  return NULL;
+}
+
+static void
+choose_again (TfSession *self, TfRegionItem *came_back)
+{
+  TfRegionItem *next = came_back;
+  if (next == NULL && self->want_mark != 0)
     next = find_choice (self, self->want_mark, self->want_hint);
   if (next != NULL)
     self->want_mark = 0;
@@ -229,8 +242,10 @@ tf_session_replace_regions (TfSession *self, GPtrArray *rows)
       g_ptr_array_add (items, tf_region_item_new (row, verdict));
     }
   guint old = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
+  TfRegionItem *came_back = self->want_new ? find_new (self, items) : NULL;
+  self->want_new = self->want_new && self->refresh_again;
   g_list_store_splice (self->regions, 0, old, items->pdata, items->len);
-  choose_again (self);
+  choose_again (self, came_back);
   self->judging = 0;
   tf_session_judge_choice (self);
   tf_session_emit (self, TF_SIGNAL_REGIONS);

@@ -165,6 +165,8 @@ ACTION (change_range)
 ACTION (show_all_times) { tf_session_pick (session_of (window), NAN, NAN); }
 
 /* -- the rest */
+ACTION (press) { tf_window_press (window, g_variant_get_string (value, NULL)); }
+ACTION (focus_plate) { tf_window_focus_plate (window); }
 ACTION (about) { tf_window_show_about (window); }
 ACTION (cautions) { tf_window_show_cautions (window); }
 
@@ -207,6 +209,8 @@ static const GActionEntry entries[] = {
   { "range", NULL, "d", "200.0", change_range },
   { "show-hints", NULL, NULL, "false", change_show_hints },
   { "show-all-times", show_all_times, NULL, NULL, NULL },
+  { "press", press, "s", NULL, NULL },
+  { "focus-plate", focus_plate, NULL, NULL, NULL },
   { "about", about, NULL, NULL, NULL },
   { "cautions", cautions, NULL, NULL, NULL },
 };

@@ -14,6 +14,9 @@ void tf_window_add_actions (TfWindow *window);
 /** tf_window_update_actions: which commands are possible now, and the state of those that have
  * one */
 void tf_window_update_actions (TfWindow *window);
+/* tf-window-keys.c */
+/** tf_window_press: @detailed: a window action as of a key: done, or said why it cannot be */
+void tf_window_press (TfWindow *window, const char *detailed);
 /* tf-window-files.c: choosing files, dropping them, asking for names */
 void tf_window_choose_ledger (TfWindow *window);
 void tf_window_choose_new_ledger (TfWindow *window);

@@ -32,6 +32,7 @@ struct _TfWindow
   TfSlip *slip;
   TfWingsView *wings;
   TfSession *session;
+  AdwToast *toast; /* the last one */
   guint age_timer;
 };
 
@@ -58,12 +59,16 @@ tf_window_focus_plate (TfWindow *self)
   gtk_widget_grab_focus (GTK_WIDGET (tf_plate_pane_get_plate (self->plate_pane)));
 }
 
+/* What was said before is past: it does not stand in the way of what is said now. */
 void
 tf_window_say (TfWindow *self, const char *text)
 {
   g_autofree char *plain = g_markup_escape_text (text, -1);
   AdwToast *toast = adw_toast_new (plain);
   adw_toast_set_timeout (toast, TOAST_SECONDS);
+  if (self->toast != NULL)
+    adw_toast_dismiss (self->toast);
+  g_set_object (&self->toast, toast);
   adw_toast_overlay_add_toast (self->toasts, toast);
 }
 
@@ -118,6 +123,17 @@ age_tick (gpointer data)
   return G_SOURCE_CONTINUE;
 }
 
+/* What held the keyboard is gone with the choice: the keys go to the plate. */
+static void
+rescue_focus (TfWindow *self)
+{
+  GtkWidget *focus = gtk_window_get_focus (GTK_WINDOW (self));
+  GtkWidget *plate = GTK_WIDGET (tf_plate_pane_get_plate (self->plate_pane));
+  if (gtk_widget_get_mapped (plate)
+      && (focus == NULL || !gtk_widget_get_mapped (focus) || !gtk_widget_is_sensitive (focus)))
+    gtk_widget_grab_focus (plate);
+}
+
 /* -- following the session ------------------------------------------------------------------- */
 
 static void
@@ -130,7 +146,10 @@ show_page (TfWindow *self)
   const char *page = n > 0 ? "work" : ledger ? "no-frames" : loading ? "opening" : "welcome";
   if (n == 0 && tf_session_get_progress (self->session, NULL) != NULL)
     page = "taking-in";
+  gboolean came = g_strcmp0 (gtk_stack_get_visible_child_name (self->stack), page) != 0;
   gtk_stack_set_visible_child_name (self->stack, page);
+  if (came && n > 0)
+    tf_window_focus_plate (self); /* not on the first button of the head */
   gtk_revealer_set_reveal_child (self->loose_bar,
                                  n > 0 && tf_session_get_ledger_path (self->session) == NULL);
 }
@@ -333,6 +352,7 @@ dispose (GObject *object)
       tf_session_close (self->session);
     }
   g_clear_object (&self->session);
+  g_clear_object (&self->toast);
   G_OBJECT_CLASS (tf_window_parent_class)->dispose (object);
 }
 
@@ -412,6 +432,8 @@ tf_window_init (TfWindow *self)
   tf_roll_set_session (self->roll, self->session);
   tf_plate_pane_set_session (self->plate_pane, self->session);
   tf_slip_set_session (self->slip, self->session);
+  g_signal_connect_object (self->session, "choice-changed", G_CALLBACK (rescue_focus), self,
+                           G_CONNECT_SWAPPED | G_CONNECT_AFTER);
   tf_wings_view_set_session (self->wings, self->session);
   self->age_timer = g_timeout_add_seconds (AGE_SECONDS, age_tick, self);
   GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));

@@ -176,8 +176,10 @@ keep_and_undo (void)
   g_assert_true (tf_session_undo (session));
   test_desk_wait ("the mark to go", no_mark, session);
   g_assert_cmpuint (marks_in_file (path), ==, 0);
+  g_assert_true (tf_region_item_get_row (tf_session_get_region (session))->is_hint);
   g_assert_true (tf_session_redo (session));
   test_desk_wait ("the mark to come back", one_mark, session);
+  g_assert_false (tf_region_item_get_row (tf_session_get_region (session))->is_hint);
   tf_session_close (session);
 }
 
@@ -187,6 +189,12 @@ fewer_hints (gpointer data)
   return count (data, TRUE) < GPOINTER_TO_UINT (g_object_get_data (data, "hints"));
 }
 
+static gboolean
+all_hints (gpointer data)
+{
+  return !fewer_hints (data);
+}
+
 static void
 drop_goes_on (void)
 {
@@ -194,11 +202,14 @@ drop_goes_on (void)
   g_autoptr (TfSession) session = test_desk_session (path);
   g_object_set_data (G_OBJECT (session), "hints", GUINT_TO_POINTER (count (session, TRUE)));
   tf_session_step_hint (session, 1);
-  TfRegionItem *first = tf_session_get_region (session);
+  gint64 first = tf_region_item_get_row (tf_session_get_region (session))->mark;
   g_assert_true (tf_session_drop (session));
   test_desk_wait ("the hint to go", fewer_hints, session);
   g_assert_nonnull (tf_session_get_region (session)); /* the next one */
-  g_assert_true (tf_session_get_region (session) != first);
+  g_assert_cmpint (tf_region_item_get_row (tf_session_get_region (session))->mark, !=, first);
+  g_assert_true (tf_session_undo (session));
+  test_desk_wait ("the hint to come back", all_hints, session);
+  g_assert_true (tf_region_item_is (tf_session_get_region (session), first, TRUE));
   tf_session_close (session);
 }
 

@@ -78,6 +78,7 @@ actions_follow (void)
     return;
   TfWindow *window = window_on ("actions.ledger");
   TfSession *session = tf_window_get_session (window);
+  g_assert_true (TF_IS_PLATE (gtk_window_get_focus (GTK_WINDOW (window))));
   g_assert_true (enabled (window, "draw"));
   g_assert_true (enabled (window, "next-hint"));
   g_assert_false (enabled (window, "keep"));
@@ -181,6 +182,101 @@ slip_says_how (void)
   gtk_window_destroy (GTK_WINDOW (window));
 }
 
+/* -- what is written and pressed ------------------------------------------------------------- */
+
+static GtkWidget *
+find_widget (GtkWidget *widget, GType type)
+{
+  if (G_TYPE_CHECK_INSTANCE_TYPE (widget, type))
+    return widget;
+  GtkWidget *found = NULL;
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL && found == NULL;
+       child = gtk_widget_get_next_sibling (child))
+    found = find_widget (child, type);
+  return found;
+}
+
+static gboolean
+has_mark (gpointer session)
+{
+  TfRegionItem *item = tf_session_get_region (session);
+  return item != NULL && !tf_region_item_get_row (item)->is_hint;
+}
+
+static gboolean
+is_saved (gpointer session)
+{
+  return tf_session_get_pending (session) == 0;
+}
+
+static void
+check_note_in_file (const char *path, const char *expected)
+{
+  g_autoptr (TfLedger) ledger = tf_ledger_open (path, NULL);
+  TfRowQuery query = { .marks = TRUE };
+  g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &query, NULL);
+  g_assert_cmpuint (rows->len, ==, 1);
+  g_assert_cmpstr (((TfRow *)rows->pdata[0])->note, ==, expected);
+}
+
+/* Escape, a click beside every region, another frame: the choice goes before the entry knows. */
+static void
+note_outlives_choice (void)
+{
+  if (!test_desk_has_display ())
+    return;
+  g_autofree char *path = test_desk_path ("note.ledger");
+  TfWindow *window = window_on ("note.ledger");
+  TfSession *session = tf_window_get_session (window);
+  activate (window, "next-hint");
+  activate (window, "keep");
+  test_desk_wait ("the mark", has_mark, session);
+  GtkWidget *note = find_widget (GTK_WIDGET (window), GTK_TYPE_TEXT_VIEW);
+  gtk_widget_grab_focus (note);
+  gtk_text_buffer_set_text (gtk_text_view_get_buffer (GTK_TEXT_VIEW (note)), "seen twice", -1);
+  activate (window, "cancel-drawing");
+  g_assert_null (tf_session_get_region (session));
+  test_desk_wait ("the note to be saved", is_saved, session);
+  check_note_in_file (path, "seen twice");
+  gtk_window_destroy (GTK_WINDOW (window));
+}
+
+static gboolean
+says (GtkWidget *widget, const char *words)
+{
+  if (GTK_IS_LABEL (widget) && strstr (gtk_label_get_label (GTK_LABEL (widget)), words) != NULL)
+    return TRUE;
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL;
+       child = gtk_widget_get_next_sibling (child))
+    if (says (child, words))
+      return TRUE;
+  return FALSE;
+}
+
+static void
+press (TfWindow *window, const char *key)
+{
+  g_action_group_activate_action (G_ACTION_GROUP (window), "press", g_variant_new_string (key));
+}
+
+static void
+keys_say_why_not (void)
+{
+  if (!test_desk_has_display ())
+    return;
+  TfWindow *window = window_on ("keys.ledger");
+  press (window, "keep");
+  g_assert_true (says (GTK_WIDGET (window), "Choose a hint first (.), or draw an outline"));
+  press (window, "next-hint");
+  press (window, "class::β");
+  g_assert_true (says (GTK_WIDGET (window), "Keep the hint first"));
+  press (window, "keep");
+  test_desk_wait ("the mark", has_mark, tf_window_get_session (window));
+  press (window, "drop-hint");
+  g_assert_true (says (GTK_WIDGET (window), "Delete withdraws a mark"));
+  gtk_window_destroy (GTK_WINDOW (window));
+}
+
 static void
 ledger_by_name_or_bytes (void)
 {
@@ -211,6 +307,8 @@ test_desk_add_window (void)
                    templates);
   g_test_add_func ("/desk/window/commands-are-possible-when-they-make-sense", actions_follow);
   g_test_add_func ("/desk/window/every-button-and-drawing-has-a-name", names);
+  g_test_add_func ("/desk/window/a-note-outlives-the-choice-of-its-region", note_outlives_choice);
+  g_test_add_func ("/desk/window/a-key-that-can-do-nothing-says-why", keys_say_why_not);
   g_test_add_func ("/desk/window/the-help-overlay-opens", help_overlay);
   g_test_add_func ("/desk/window/a-ledger-is-known-by-its-ending-or-its-first-bytes",
                    ledger_by_name_or_bytes);
