@@ -3,6 +3,7 @@
  */
 #include "tf-roll.h"
 
+#include <math.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-roll-row.h"
@@ -13,7 +14,8 @@ struct _TfRoll
   GtkWidget parent;
   GtkListView *list;
   GtkStack *stack;
-  GtkLabel *empty;
+  GtkLabel *empty, *narrowed_words;
+  GtkWidget *narrowed; /* stands while the wings' stretch hides frames */
   TfSession *session;
   GtkSingleSelection *selection;
   TfThumbs *thumbs;
@@ -75,11 +77,36 @@ frame_changed (TfRoll *self)
     gtk_widget_activate_action (GTK_WIDGET (self->list), "list.scroll-to-item", "u", at);
 }
 
+static char *
+dup_day_of (double at)
+{
+  int year, month, day;
+  if (!tf_time_calendar (tf_time_from_year (at), &year, &month, &day, NULL, NULL, NULL))
+    return g_strdup ("—");
+  g_autoptr (GDateTime) date = g_date_time_new_utc (year, month, day, 0, 0, 0);
+  return date != NULL ? g_date_time_format (date, _ ("%-d %b %Y")) : g_strdup ("—");
+}
+
+static void
+show_narrowed (TfRoll *self, guint n)
+{
+  double from, to;
+  tf_session_get_pick (self->session, &from, &to);
+  gtk_widget_set_visible (self->narrowed, isfinite (from) && isfinite (to));
+  if (!isfinite (from) || !isfinite (to))
+    return;
+  g_autofree char *first = dup_day_of (from), *last = dup_day_of (to);
+  g_autofree char *text = g_strdup_printf (_ ("%s to %s: %u of %u frames"), first, last, n,
+                                           tf_session_get_n_frames (self->session));
+  gtk_label_set_label (self->narrowed_words, text);
+}
+
 static void
 frames_changed (TfRoll *self)
 {
   guint n = g_list_model_get_n_items (tf_session_get_frames (self->session));
   gboolean some = tf_session_get_n_frames (self->session) > 0;
+  show_narrowed (self, n);
   gtk_stack_set_visible_child_name (self->stack, n > 0 ? "list" : "empty");
   gtk_label_set_label (
       self->empty,
@@ -110,8 +137,8 @@ static void
 dispose (GObject *object)
 {
   TfRoll *self = TF_ROLL (object);
-  GtkWidget *stack = gtk_widget_get_first_child (GTK_WIDGET (self));
-  g_clear_pointer (&stack, gtk_widget_unparent);
+  GtkWidget *child = gtk_widget_get_first_child (GTK_WIDGET (self));
+  g_clear_pointer (&child, gtk_widget_unparent);
   g_clear_object (&self->selection);
   g_clear_object (&self->session);
   g_clear_pointer (&self->thumbs, tf_thumbs_free);
@@ -129,6 +156,8 @@ tf_roll_class_init (TfRollClass *klass)
   gtk_widget_class_bind_template_child (widget, TfRoll, stack);
   gtk_widget_class_bind_template_child (widget, TfRoll, list);
   gtk_widget_class_bind_template_child (widget, TfRoll, empty);
+  gtk_widget_class_bind_template_child (widget, TfRoll, narrowed);
+  gtk_widget_class_bind_template_child (widget, TfRoll, narrowed_words);
 }
 
 static void

@@ -7,6 +7,7 @@
 
 #include "tf-dial-view.h"
 #include "tf-plate.h"
+#include "tf-roll.h"
 #include "tf-slip-row.h"
 #include "tf-window.h"
 #include "tf-wings-view.h"
@@ -278,6 +279,22 @@ keys_say_why_not (void)
 }
 
 static void
+narrowed_roll_says_so (void)
+{
+  if (!test_desk_has_display ())
+    return;
+  TfWindow *window = window_on ("narrowed.ledger");
+  TfSession *session = tf_window_get_session (window);
+  GtkWidget *roll = find_widget (GTK_WIDGET (window), TF_TYPE_ROLL);
+  g_assert_false (says (roll, "of 1 frames"));
+  tf_session_pick (session, 1999, 2000.5);
+  g_assert_true (says (roll, "1 Jan 1999 to 2 Jul 2000: 0 of 1 frames"));
+  activate (window, "show-all-times");
+  g_assert_cmpuint (g_list_model_get_n_items (tf_session_get_frames (session)), ==, 1);
+  gtk_window_destroy (GTK_WINDOW (window));
+}
+
+static void
 ledger_by_name_or_bytes (void)
 {
   g_autofree char *plain = test_desk_path ("plain.txt"), *ledger = test_desk_path ("bytes.db");
@@ -309,6 +326,7 @@ test_desk_add_window (void)
   g_test_add_func ("/desk/window/every-button-and-drawing-has-a-name", names);
   g_test_add_func ("/desk/window/a-note-outlives-the-choice-of-its-region", note_outlives_choice);
   g_test_add_func ("/desk/window/a-key-that-can-do-nothing-says-why", keys_say_why_not);
+  g_test_add_func ("/desk/window/a-narrowed-roll-says-so", narrowed_roll_says_so);
   g_test_add_func ("/desk/window/the-help-overlay-opens", help_overlay);
   g_test_add_func ("/desk/window/a-ledger-is-known-by-its-ending-or-its-first-bytes",
                    ledger_by_name_or_bytes);
