@@ -243,6 +243,46 @@ tf_session_choose_frame (TfSession *self, TfFrameItem *item)
   tf_session_refresh (self, FALSE);
 }
 
+/* The next frame in that direction on which hints wait, round the end; NULL when there is none. */
+static TfFrameItem *
+ref_waiting_frame (TfSession *self, int step)
+{
+  GListModel *list = G_LIST_MODEL (self->shown);
+  int n = (int)g_list_model_get_n_items (list), at = step > 0 ? -1 : n;
+  for (int k = 0; k < n; k++)
+    {
+      g_autoptr (TfFrameItem) item = g_list_model_get_item (list, (guint)k);
+      if (item == self->frame_item)
+        at = k;
+    }
+  for (int tried = 0; tried < n; tried++)
+    {
+      at = (at + step + n) % n;
+      g_autoptr (TfFrameItem) item = g_list_model_get_item (list, (guint)at);
+      if (item != self->frame_item && tf_frame_item_get_state (item) == TF_FRAME_WAITING)
+        return g_steal_pointer (&item);
+    }
+  return NULL;
+}
+
+gboolean
+tf_session_has_waiting_frame (TfSession *self)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
+  g_autoptr (TfFrameItem) item = ref_waiting_frame (self, 1);
+  return item != NULL;
+}
+
+gboolean
+tf_session_step_waiting_frame (TfSession *self, int step)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && (step == 1 || step == -1), FALSE);
+  g_autoptr (TfFrameItem) item = ref_waiting_frame (self, step);
+  if (item != NULL)
+    tf_session_choose_frame (self, item);
+  return item != NULL;
+}
+
 void
 tf_session_step_frame (TfSession *self, int step)
 {

@@ -69,6 +69,10 @@ void tf_session_add_frames (TfSession *session, char *const *paths);
 TfFrameItem *tf_session_get_frame_item (TfSession *session);
 void tf_session_choose_frame (TfSession *session, TfFrameItem *item);
 void tf_session_step_frame (TfSession *session, int step);
+/** tf_session_step_waiting_frame: to the next (1) or previous (-1) other frame on which hints wait, of
+ * those the roll shows. FALSE when there is none. */
+gboolean tf_session_step_waiting_frame (TfSession *session, int step);
+gboolean tf_session_has_waiting_frame (TfSession *session);
 /** tf_session_get_frame: (nullable): the open frame, borrowed */
 TfFrame *tf_session_get_frame (TfSession *session);
 /** tf_session_get_frame_problem: why the chosen frame cannot be shown */

@@ -66,8 +66,18 @@ ACTION (set_person)
 }
 
 /* -- choosing and judging */
-ACTION (next_hint) { tf_session_step_hint (session_of (window), 1); }
-ACTION (previous_hint) { tf_session_step_hint (session_of (window), -1); }
+
+/* When no hint waits on this frame: on to the next frame where one does. */
+static void
+step_hint (gpointer window, int step)
+{
+  TfSession *session = session_of (window);
+  if (!tf_session_step_hint (session, step))
+    tf_session_step_waiting_frame (session, step);
+}
+
+ACTION (next_hint) { step_hint (window, 1); }
+ACTION (previous_hint) { step_hint (window, -1); }
 
 /* A deed that needs a name asks for it and is then done. */
 static void
@@ -282,8 +292,9 @@ tf_window_update_actions (TfWindow *self)
   for (guint k = 0; k < G_N_ELEMENTS (on_frame); k++)
     enable (self, on_frame[k], frame);
   enable (self, "make-here", tf_window_can_make_here (self));
-  enable (self, "next-hint", hint);
-  enable (self, "previous-hint", hint);
+  gboolean waiting = hint || tf_session_has_waiting_frame (session);
+  enable (self, "next-hint", waiting);
+  enable (self, "previous-hint", waiting);
   enable (self, "keep", tf_session_can_keep (session));
   enable (self, "drop-hint", tf_session_can_drop (session));
   enable (self, "withdraw", tf_session_can_withdraw (session));
