@@ -25,11 +25,11 @@ typedef struct
 
 static const Key keys[] = {
   { "next-hint",
-    { N_ ("No hint waits on any frame in the roll."), N_ ("No hint waits on any frame in the roll."),
-      N_ ("No hint waits on any frame in the roll.") } },
+    { N_ ("No hint waits on any frame shown."), N_ ("No hint waits on any frame shown."),
+      N_ ("No hint waits on any frame shown.") } },
   { "previous-hint",
-    { N_ ("No hint waits on any frame in the roll."), N_ ("No hint waits on any frame in the roll."),
-      N_ ("No hint waits on any frame in the roll.") } },
+    { N_ ("No hint waits on any frame shown."), N_ ("No hint waits on any frame shown."),
+      N_ ("No hint waits on any frame shown.") } },
   { "keep",
     { N_ ("Choose a hint first (.), or draw an outline (O)."), NULL,
       N_ ("This is a mark already.") } },
