@@ -9,6 +9,7 @@
 #include "tf-plate.h"
 #include "tf-roll.h"
 #include "tf-slip-row.h"
+#include "tf-slip.h"
 #include "tf-window.h"
 #include "tf-wings-view.h"
 
@@ -17,6 +18,7 @@ window_new (void)
 {
   g_autoptr (AdwApplication) application
       = adw_application_new ("io.tiltfield.Test", G_APPLICATION_NON_UNIQUE);
+  g_application_set_resource_base_path (G_APPLICATION (application), "/io/tiltfield/Tiltfield");
   g_application_register (G_APPLICATION (application), NULL, NULL);
   return tf_window_new (GTK_APPLICATION (application));
 }
@@ -278,6 +280,33 @@ keys_say_why_not (void)
   gtk_window_destroy (GTK_WINDOW (window));
 }
 
+static int
+least_width (GtkWidget *widget)
+{
+  int least;
+  gtk_widget_measure (widget, GTK_ORIENTATION_HORIZONTAL, -1, &least, NULL, NULL, NULL);
+  return least;
+}
+
+/* Else the Sun shifts sideways whenever a region is chosen. */
+static void
+slip_keeps_its_width (void)
+{
+  if (!test_desk_has_display ())
+    return;
+  TfWindow *window = window_on ("width.ledger");
+  GtkWidget *slip = find_widget (GTK_WIDGET (window), TF_TYPE_SLIP);
+  int before = least_width (slip);
+  press (window, "next-hint");
+  g_assert_cmpint (least_width (slip), ==, before);
+  press (window, "keep");
+  test_desk_wait ("the mark", has_mark, tf_window_get_session (window));
+  g_assert_cmpint (least_width (slip), ==, before);
+  activate (window, "cancel-drawing");
+  g_assert_cmpint (least_width (slip), ==, before);
+  gtk_window_destroy (GTK_WINDOW (window));
+}
+
 static void
 narrowed_roll_says_so (void)
 {
@@ -326,6 +355,7 @@ test_desk_add_window (void)
   g_test_add_func ("/desk/window/every-button-and-drawing-has-a-name", names);
   g_test_add_func ("/desk/window/a-note-outlives-the-choice-of-its-region", note_outlives_choice);
   g_test_add_func ("/desk/window/a-key-that-can-do-nothing-says-why", keys_say_why_not);
+  g_test_add_func ("/desk/slip/its-width-stays-whatever-is-chosen", slip_keeps_its_width);
   g_test_add_func ("/desk/window/a-narrowed-roll-says-so", narrowed_roll_says_so);
   g_test_add_func ("/desk/window/the-help-overlay-opens", help_overlay);
   g_test_add_func ("/desk/window/a-ledger-is-known-by-its-ending-or-its-first-bytes",
