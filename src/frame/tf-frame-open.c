@@ -201,7 +201,8 @@ drop_fill (float *pixels, TfFrameInfo *info)
       for (guint x = 0; x < g->width; x += step)
         {
           float v = pixels[(gsize)y * g->width + x];
-          if (isnan (v) || hypot (x + 1 - cx, y + 1 - cy) < 1.03 * r + 2)
+          double dx = x + 1 - cx, dy = y + 1 - cy, least = 1.03 * r + 2;
+          if (isnan (v) || dx * dx + dy * dy < least * least)
             continue;
           if (pass == 0 && isnan (fill))
             fill = v;
@@ -237,7 +238,8 @@ judge_missing (const float *pixels, TfFrameInfo *info)
   for (guint y = 0; y < g->height; y += step)
     for (guint x = 0; x < g->width; x += step)
       {
-        if (disk && hypot (x + 1 - cx, y + 1 - cy) > 0.985 * r)
+        double dx = x + 1 - cx, dy = y + 1 - cy, most = 0.985 * r;
+        if (disk && dx * dx + dy * dy > most * most)
           continue;
         n++;
         missing += isnan (pixels[(gsize)y * g->width + x]) != 0;

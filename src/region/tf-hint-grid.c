@@ -361,6 +361,31 @@ set_plane (TfHintGrid *g, const TfGeometry *geometry, const TfHintParams *p)
   g->north[2] = cos (lat);
 }
 
+/* What comes after the stripes, each part by itself. */
+typedef struct
+{
+  TfHintGrid *grid;
+  const TfGeometry *geometry;
+  float *flux, *area;
+  double sigma; /* cells */
+} Smoothing;
+
+/* A "band" of the pool is one of three parts here; low lends its room. */
+static void
+smooth_part (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  const Smoothing *s = data;
+  TfHintGrid *g = s->grid;
+  float *sums = band == 0 ? s->flux : s->area;
+  if (band == 2)
+    {
+      fill_mu (g, s->geometry);
+      return;
+    }
+  add_stripes (sums, (gsize)g->n * g->n);
+  tf_hint_blur (sums, band == 0 ? g->field : g->low, g->n, g->n, s->sigma);
+}
+
 TfHintGrid *
 tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale, const TfWork *work)
 {
@@ -382,11 +407,9 @@ tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale
   gboolean done = tf_bands_run (work, STRIPES * TF_BAND_ROWS, do_stripe, &pass);
   if (!done)
     return tf_hint_grid_free (g), NULL;
-  add_stripes (flux, cells);
-  add_stripes (area, cells);
-  fill_mu (g, geometry);
-  tf_hint_blur (flux, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
-  tf_hint_blur (area, g->field, g->n, g->n, params->smooth_mm / params->cell_mm);
+  Smoothing smoothing = { g, geometry, flux, area, params->smooth_mm / params->cell_mm };
+  TfWork whole = { .workers = work != NULL ? work->workers : NULL };
+  tf_bands_run (&whole, 3 * TF_BAND_ROWS, smooth_part, &smoothing);
   divide (g, flux, area);
   fill_levels (g, params);
   return g;

@@ -188,30 +188,55 @@ take_hills (TfHintPieces *pieces, Flood *flood, const guint8 *keep)
       pieces->piece[k] = name[find (flood->parent, flood->label[k])];
 }
 
-static void
-find_hills (TfHintPieces *pieces, int sign)
+/* Both signs, found side by side, taken one after the other. */
+typedef struct
 {
+  const TfHintPieces *pieces;
+  Flood flood[2];
+  guint8 *keep[2];
+} Hills;
+
+/* A "band" of the pool is a sign here. */
+static void
+find_hills (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  Hills *hills = data;
+  const TfHintPieces *pieces = hills->pieces;
   const TfHintGrid *g = pieces->grid;
   gsize cells = (gsize)g->n * g->n;
-  Flood flood = { .grid = g, .saddle = pieces->params->saddle, .sign = sign };
+  int sign = band == 0 ? 1 : -1;
   g_autofree float *height = g_new (float, cells), *room = g_new (float, cells);
-  g_autofree gint32 *label = g_new (gint32, cells);
-  g_autofree guint8 *keep = g_new0 (guint8, cells);
-  flood.parent = g_array_new (FALSE, FALSE, sizeof (gint32));
-  flood.top = g_array_new (FALSE, FALSE, sizeof (float));
+  Flood *flood = &hills->flood[band];
+  *flood = (Flood){ .grid = g, .saddle = pieces->params->saddle, .sign = sign, .height = height };
+  flood->label = g_new (gint32, cells);
+  flood->parent = g_array_new (FALSE, FALSE, sizeof (gint32));
+  flood->top = g_array_new (FALSE, FALSE, sizeof (float));
+  hills->keep[band] = g_new0 (guint8, cells);
   for (gsize k = 0; k < cells; k++)
     {
       float f = (float)sign * g->field[k];
       height[k] = f > 0.0f ? f : 0.0f;
     }
   tf_hint_blur (height, room, g->n, g->n, pieces->params->hill_mm / g->cell_mm);
-  flood.height = height;
-  flood.label = label;
-  flood_all (&flood);
-  mark_blobs (&flood, keep);
-  take_hills (pieces, &flood, keep);
-  g_array_unref (flood.parent);
-  g_array_unref (flood.top);
+  flood_all (flood);
+  mark_blobs (flood, hills->keep[band]);
+  flood->height = NULL;
+}
+
+static void
+take_signs (TfHintPieces *pieces, const TfWork *work)
+{
+  Hills hills = { .pieces = pieces };
+  TfWork whole = { .workers = work != NULL ? work->workers : NULL };
+  tf_bands_run (&whole, 2 * TF_BAND_ROWS, find_hills, &hills);
+  for (guint k = 0; k < 2; k++)
+    {
+      take_hills (pieces, &hills.flood[k], hills.keep[k]);
+      g_array_unref (hills.flood[k].parent);
+      g_array_unref (hills.flood[k].top);
+      g_free (hills.flood[k].label);
+      g_free (hills.keep[k]);
+    }
 }
 
 /* -- neighbours -------------------------------------------------------------------------------------------- */
@@ -251,7 +276,7 @@ find_pairs (TfHintPieces *pieces)
 }
 
 TfHintPieces *
-tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params)
+tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params, const TfWork *work)
 {
   TfHintPieces *pieces = g_new0 (TfHintPieces, 1);
   gsize cells = (gsize)grid->n * grid->n;
@@ -263,8 +288,7 @@ tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params)
   pieces->clusters = g_array_new (FALSE, TRUE, sizeof (TfHintCluster));
   pieces->pairs = g_array_new (FALSE, TRUE, sizeof (TfHintPair));
   memset (pieces->piece, 0xff, cells * sizeof *pieces->piece);
-  find_hills (pieces, 1);
-  find_hills (pieces, -1);
+  take_signs (pieces, work);
   tf_hint_nearest (pieces->piece, grid->n, grid->n, pieces->nearest, pieces->distance);
   for (gsize k = 0; k < cells; k++)
     pieces->distance[k] *= (float)grid->cell_mm;

@@ -65,7 +65,7 @@ void tf_hint_grid_unit (const TfHintGrid *grid, double x, double y, double unit[
 void tf_hint_blur (float *values, float *room, guint width, guint height, double sigma);
 
 /* tf-hint-pieces.c: levels, hills, nearest pieces, neighbours */
-TfHintPieces *tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params);
+TfHintPieces *tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params, const TfWork *work);
 void tf_hint_pieces_free (TfHintPieces *pieces);
 double tf_hint_total (const TfHintCluster *cluster);
 double tf_hint_weaker (const TfHintCluster *cluster); /* share of the weaker polarity */

@@ -132,6 +132,12 @@ check_kind (const TfFrame *frame, GError **error)
   return FALSE;
 }
 
+typedef struct
+{
+  double flux;
+  guint cluster;
+} Turn;
+
 /* What the threads share; every cluster has its own place in @hints. */
 typedef struct
 {
@@ -139,6 +145,7 @@ typedef struct
   const TfHintPieces *pieces;
   const TfMeasureParams *measure;
   TfHint **hints;
+  const Turn *order;
 } Search;
 
 /* A "band" of the pool is one cluster here. */
@@ -146,8 +153,30 @@ static void
 try_cluster (guint band, guint first, guint n, guint worker, gpointer data)
 {
   const Search *search = data;
-  if (tf_hint_root (search->pieces, band) == band)
-    search->hints[band] = make_hint (search->frame, search->pieces, band, search->measure);
+  guint k = search->order[band].cluster;
+  if (tf_hint_root (search->pieces, k) == k)
+    search->hints[k] = make_hint (search->frame, search->pieces, k, search->measure);
+}
+
+static int
+by_work (const void *a, const void *b)
+{
+  const Turn *x = a, *y = b;
+  if (x->flux > y->flux || x->flux < y->flux)
+    return x->flux > y->flux ? -1 : 1;
+  return (x->cluster > y->cluster) - (x->cluster < y->cluster);
+}
+
+/* The strongest first: they are the largest, and none of them shall be what all wait for at the end. */
+static Turn *
+put_in_order (const TfHintPieces *pieces)
+{
+  guint n = pieces->clusters->len;
+  Turn *order = g_new (Turn, MAX (n, 1));
+  for (guint k = 0; k < n; k++)
+    order[k] = (Turn){ tf_hint_total (&g_array_index (pieces->clusters, TfHintCluster, k)), k };
+  qsort (order, n, sizeof *order, by_work);
+  return order;
 }
 
 static GPtrArray *
@@ -156,7 +185,9 @@ gather (Search *search, const TfWork *work, GError **error)
   guint n = search->pieces->clusters->len;
   g_autoptr (GPtrArray) hints = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_hint_free);
   g_autofree TfHint **found = g_new0 (TfHint *, MAX (n, 1));
+  g_autofree Turn *order = put_in_order (search->pieces);
   search->hints = found;
+  search->order = order;
   gboolean done = tf_bands_run (work, n * TF_BAND_ROWS, try_cluster, search);
   if (done)
     tell_neighbours (search->pieces, found);
@@ -180,9 +211,9 @@ tf_hints_find (const TfFrame *frame, const TfHintParams *params, const TfMeasure
   g_autoptr (TfHintGrid) grid = tf_hint_grid_new (frame, params, scale, work);
   if (grid == NULL)
     return set_cancelled (error), NULL;
-  g_autoptr (TfHintPieces) pieces = tf_hint_pieces_new (grid, params);
+  g_autoptr (TfHintPieces) pieces = tf_hint_pieces_new (grid, params, work);
   tf_hint_grid_free_levels (grid);
   tf_hint_join (pieces);
-  Search search = { frame, pieces, measure, NULL };
+  Search search = { frame, pieces, measure, NULL, NULL };
   return gather (&search, work, error);
 }
