@@ -4,6 +4,7 @@
 #include "tf-fill-private.h"
 
 #include <math.h>
+#include <string.h>
 
 #include "tf-geometry.h"
 
@@ -166,17 +167,13 @@ static void
 settle_row (TfFill *fill, guint row)
 {
   double v = fill->v_min + (row + 0.5) * fill->v_step;
-  guint8 last = CELL_MIXED;
-  for (guint c = 0; c < CELLS; c++)
+  guint8 *cells = fill->cell[row];
+  for (guint c = 0, end; c < CELLS; c = end + 1)
     {
-      if (fill->cell[row][c] != CELL_MIXED)
-        {
-          if (last == CELL_MIXED)
-            last = test_edges (fill, row, fill->u_min + (c + 0.5) * fill->u_step, v) ? CELL_INSIDE
-                                                                                     : CELL_OUTSIDE;
-          fill->cell[row][c] = last;
-        }
-      last = fill->cell[row][c];
+      const guint8 *mixed = memchr (cells + c, CELL_MIXED, CELLS - c);
+      end = mixed != NULL ? (guint)(mixed - cells) : CELLS;
+      if (end > c && test_edges (fill, row, fill->u_min + (c + 0.5) * fill->u_step, v))
+        memset (cells + c, CELL_INSIDE, end - c);
     }
 }
 

@@ -12,7 +12,7 @@
 enum
 {
   CUT_SAMPLES = 32,
-  GAP = 16, /* weak pixels that are not worth a new start of the geometry */
+  BLOCK = 32, /* columns that are looked through at once */
 };
 
 struct _TfMask
@@ -92,39 +92,49 @@ count_most (const TfMask *mask, const TfFrame *frame, float least)
   return n;
 }
 
-/* The places of a row's pixels; of those weaker than @least only where they lie among others. */
-static void
-find_places (const TfGeometry *g, const TfMaskBox *box, guint y, const float *field, float least, const Row *row)
-{
-  guint start = 0, end = box->width;
-  for (guint k = 0; k < box->width; k = end)
-    {
-      for (start = k; least > 0.0f && start < box->width && !(fabsf (field[start]) >= least); start++)
-        ;
-      if (least > 0.0f)
-        for (guint j = end = start; j < box->width && j < end + GAP; j++)
-          if (fabsf (field[j]) >= least)
-            end = j + 1;
-      if (start < end)
-        tf_geometry_row_sun (g, y + 1.0, box->x0 + start + 1.0, end - start, row->unit + start, row->mu + start,
-                             row->area + start);
-      end = MAX (end, start);
-    }
-}
-
-/* Puts the columns that come into question to the front. @least > 0: weaker pixels, and those without a value, are passed
- * over. */
+/* Puts the columns @from up to @to that come into question behind the @n there are. @least > 0: weaker pixels, and those
+ * without a value, are passed over. */
 static guint
-choose_columns (const Row *row, const float *field, guint width, double mu_min, float least, gboolean map)
+choose_columns (const Row *row, const float *field, guint from, guint to, guint n, double mu_min, float least, gboolean map)
 {
-  guint n = 0;
-  for (guint k = 0; k < width; k++)
+  for (guint k = from; k < to; k++)
     {
       if ((least > 0.0f && !(fabsf (field[k]) >= least)) || !(map || row->mu[k] >= mu_min))
         continue;
       if (n < k)
         memcpy (row->unit[n], row->unit[k], sizeof (Unit));
       row->at[n++] = k;
+    }
+  return n;
+}
+
+/* How far from @k on every block has a pixel of @least or more. */
+static guint
+find_end (const float *field, guint k, guint width, float least)
+{
+  if (!(least > 0.0f))
+    return width;
+  while (k < width && count_above (field + k, MIN (BLOCK, width - k), least) > 0)
+    k += MIN (BLOCK, width - k);
+  return k;
+}
+
+/* The columns of a row that come into question, and where they are on the Sun. Blocks without any are passed over. */
+static guint
+find_places (const TfGeometry *g, const TfMaskBox *box, guint y, const float *field, double mu_min, float least,
+             const Row *row)
+{
+  guint n = 0;
+  for (guint k = 0, end; k < box->width; k = end)
+    {
+      end = find_end (field, k, box->width, least);
+      if (end == k)
+        {
+          end += MIN (BLOCK, box->width - k);
+          continue;
+        }
+      tf_geometry_row_sun (g, y + 1.0, box->x0 + k + 1.0, end - k, row->unit + k, row->mu + k, row->area + k);
+      n = choose_columns (row, field, k, end, n, mu_min, least, tf_geometry_is_map (g));
     }
   return n;
 }
@@ -138,8 +148,7 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
   gboolean map = tf_geometry_is_map (g);
   const float *field
       = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
-  find_places (g, box, y, field, least, row);
-  guint n = choose_columns (row, field, box->width, mu_min, least, map);
+  guint n = find_places (g, box, y, field, mu_min, least, row);
   tf_fill_row (fill, (const Unit *)row->unit, n, row->inside);
   for (guint j = 0; j < n; j++)
     {
