@@ -26,6 +26,7 @@ typedef struct
   const float *data; /* the level */
   guint width, height;
   double shrink; /* frame pixels a level pixel: 2^level */
+  float rim[3];  /* centre and squared radius at which un-projected looks end */
   float sky[3];  /* centre and squared reach of the disk in the level: no look beyond */
   gboolean nearest;
   guint columns, rows; /* of the view */
@@ -295,6 +296,29 @@ grid_places (const Render *r, const Grid *grid, guint first, guint row, float *u
     }
 }
 
+/* The last pixel before the limb is there in one row and not in the next: un-projected, that is a comb. They end a pixel sooner. */
+static void
+cut_rim (const Render *r, float *u, float *v)
+{
+  for (guint k = 0; k < r->columns; k++)
+    {
+      float dx = u[k] - r->rim[0], dy = v[k] - r->rim[1];
+      if (dx * dx + dy * dy > r->rim[2])
+        u[k] = v[k] = NAN;
+    }
+}
+
+static void
+find_rim (Render *r)
+{
+  double x, y, radius = tf_geometry_disk_radius (r->geometry) - 1.5;
+  r->rim[2] = INFINITY;
+  if (!tf_geometry_disk_centre (r->geometry, &x, &y) || !(radius > 0))
+    return;
+  to_level (r, x, y, &r->rim[0], &r->rim[1]);
+  r->rim[2] = (float)(radius / r->shrink * radius / r->shrink);
+}
+
 /* -- rendering ------------------------------------------------------------------------------- */
 
 static void
@@ -311,7 +335,10 @@ render_band (guint band, guint first, guint n, guint worker, gpointer data)
       if (r->view->look == TF_LOOK_DISK)
         disk_places (r, row, u, v);
       else
-        grid_places (r, &grid, first, row, u, v);
+        {
+          grid_places (r, &grid, first, row, u, v);
+          cut_rim (r, u, v);
+        }
       sample_row (r, u, v, values);
       colour_row (values, r->columns, (float)r->scale, r->colours, r->ground,
                   r->out + (gsize)row * r->stride);
@@ -390,5 +417,6 @@ tf_picture_render (const TfFrame *frame, const TfView *view, const TfPaint *pain
   fill_colours (&render, paint);
   choose_level (frame, &render);
   find_sky (frame, &render);
+  find_rim (&render);
   return tf_bands_run (work, render.rows, render_band, &render);
 }
