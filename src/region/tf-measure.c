@@ -82,6 +82,19 @@ set_pole (TfPole *pole, const TfFrame *frame, const TfAxis *axis, guint sign, co
   pole->magnetic_area_msh = 1e6 * sum->area / hemisphere;
 }
 
+/* On a map a region's time is that of its own column, where the rotation is known. */
+static void
+set_map_time (TfMeasure *m, const TfFrame *frame)
+{
+  double x, y;
+  if (!tf_geometry_sun_to_pixel (tf_frame_get_geometry (frame), m->carrington_lon_deg, m->lat_deg,
+                                 &x, &y, NULL))
+    return;
+  TfTime column = tf_frame_info_column_time (tf_frame_get_info (frame), x);
+  if (tf_time_is_known (column))
+    m->time = column;
+}
+
 /* The region's place: midpoint of the poles, or the one pole. */
 static void
 set_place (TfMeasure *m, const TfFrame *frame, const TfAxis *axis)
@@ -97,7 +110,10 @@ set_place (TfMeasure *m, const TfFrame *frame, const TfAxis *axis)
   tf_sphere_lonlat (middle, &m->carrington_lon_deg, &m->lat_deg);
   m->stonyhurst_lon_deg = tf_geometry_stonyhurst_of (g, m->carrington_lon_deg);
   if (tf_geometry_is_map (g))
-    return;
+    {
+      set_map_time (m, frame);
+      return;
+    }
   m->cmd_deg = tf_wrap_180 (m->carrington_lon_deg - tf_geometry_central_carrington (g));
   tf_geometry_sun_to_pixel (g, m->carrington_lon_deg, m->lat_deg, &x, &y, &m->mu);
 }

@@ -374,6 +374,7 @@ test_map (void)
   info->role = TF_ROLE_FIELD;
   info->field = TF_FIELD_RADIAL;
   info->geometry = g;
+  info->rotation_number = 2142;
   g_autoptr (TfFrame) frame = tf_frame_new (info, field, NULL);
   g_free (field);
   g_autoptr (TfOutline) outline = tf_outline_new_cap (builder_time (), 0.3, 20.0, 9.5, 0);
@@ -387,6 +388,9 @@ test_map (void)
                  tf_sphere_distance (poles[0].lon, poles[0].lat, poles[1].lon, poles[1].lat), 0.02);
   tf_check_near ("tilt", m.axis_tilt_deg, 8.0, 0.3);
   g_assert_cmpint (m.leading_polarity, ==, 1);
+  /* Longitude 0 passes the central meridian as rotation 2143 begins; a day is 13.2 degrees. */
+  tf_check_near ("time of its column", m.time.s,
+                 tf_carrington_time (2143.0 - m.carrington_lon_deg / 360.0).s, 60.0);
   tf_check_nan ("mu", m.mu);
   tf_check_nan ("Stonyhurst longitude", m.stonyhurst_lon_deg);
   tf_check_nan ("distance from central meridian", m.cmd_deg);
