@@ -46,11 +46,14 @@ tf_sample_row_init (TfSampleRow *row)
     .imbalance = NAN,
     .compactness = NAN,
     .axial_dipole_gauss = NAN,
+    .axial_dipole_sigma_gauss = NAN,
     .leading_polarity = 0,
     .leading_sure = -1,
     .witnesses_differ = -1,
     .straddles = -1,
     .size = -1,
+    .born = -1,
+    .bracketed = -1,
     .origin = TF_ORIGIN_OUTSIDE,
   };
 }

@@ -39,12 +39,15 @@ typedef struct
   double flux_mx;   /* unsigned */
   double imbalance; /* (+ - -)/(+ + -) */
   double compactness;
-  double axial_dipole_gauss;
+  double axial_dipole_gauss, axial_dipole_sigma_gauss;
   int leading_polarity;   /* 1, -1, 0 none in the source */
   gint8 leading_sure;     /* 1 yes, 0 no, -1 the source does not say */
   gint8 witnesses_differ; /* 1, 0, -1 */
   gint8 straddles;        /* poles on opposite sides of the equator */
   gint8 size;             /* 0 region, 1 ephemeral, -1 unknown */
+  gint8 born;             /* on the visible disk: 1 yes, 0 no, -1 the source does not say */
+  gint8 bracketed;        /* greatest flux neither the first nor the last mark; -1 not asked */
+  guint16 instrument;     /* number of the instrument; 0 not known */
   TfOrigin origin;
 } TfSampleRow;
 

@@ -51,6 +51,7 @@ tf_study_measure_row (const TfMeasure *m, TfSampleRow *out)
   out->imbalance = m->imbalance;
   out->compactness = m->compactness;
   out->axial_dipole_gauss = m->axial_dipole_gauss;
+  out->axial_dipole_sigma_gauss = m->axial_dipole_sigma_gauss;
   out->leading_polarity = m->leading_polarity;
   out->leading_sure = m->leading_sure != 0;
   out->witnesses_differ = witnesses_differ (m->witnesses);

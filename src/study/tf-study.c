@@ -39,6 +39,7 @@ tf_study_new_default (void)
   tf_options_reset (tf_divide_options, &study->divide);
   tf_options_reset (tf_hale_options, &study->hale);
   tf_options_reset (tf_joy_options, &study->joy);
+  tf_options_reset (tf_emergence_options, &study->emergence);
   return study;
 }
 
@@ -74,6 +75,8 @@ tf_findings_free (TfFindings *findings)
   g_clear_pointer (&findings->hale, g_array_unref);
   g_clear_pointer (&findings->joy, g_array_unref);
   g_clear_pointer (&findings->what_if, g_array_unref);
+  g_clear_pointer (&findings->dipoles, g_array_unref);
+  g_clear_pointer (&findings->emergence, tf_emergence_free);
   g_clear_pointer (&findings->cautions, g_ptr_array_unref);
   g_free (findings);
 }
@@ -168,6 +171,8 @@ tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
   findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);
   findings->joy = fit_joy (findings, study);
   findings->what_if = tf_study_what_if (study, findings->sample);
+  findings->dipoles = tf_dipole_sums (findings->sample, findings->verdicts);
+  findings->emergence = tf_emergence_new (findings->sample, &study->emergence);
   average_tilts (findings);
   tf_study_add_cautions (findings, study, rows);
   return g_steal_pointer (&findings);

@@ -13,7 +13,9 @@
 #include <glib.h>
 #include <json-glib/json-glib.h>
 
+#include "tf-dipole-sum.h"
 #include "tf-divide.h"
+#include "tf-emergence.h"
 #include "tf-hale.h"
 #include "tf-joy.h"
 #include "tf-ledger.h"
@@ -49,6 +51,7 @@ typedef struct
   TfDivideParams divide;
   TfHaleParams hale;
   TfJoyParams joy;
+  TfEmergenceParams emergence;
   TfDivides *divides; /* the moved ones; their options are those of @divide. NULL: all computed */
 } TfStudy;
 TfStudy *tf_study_new_default (void);
@@ -76,12 +79,14 @@ typedef struct
   GHashTable *left_out;   /* why the sieve left a row out -> GUINT_TO_POINTER (count) */
   /* condition -> count of rows taken though they lack what it asks about */
   GHashTable *passed_without;
-  GHashTable *cannot_say; /* reason code of a verdict -> count */
+  GHashTable *cannot_say;  /* reason code of a verdict -> count */
   double even_floor_gauss; /* the study's floor; NaN when it could not be worked out */
   guint n_other_floor;     /* rows measured with another floor than the study's */
   GArray *hale;            /* TfHaleRow */
   GArray *joy;             /* TfJoyFit: each cycle and hemisphere, then all */
   GArray *what_if;         /* TfWhatIf */
+  GArray *dipoles;         /* TfDipoleSum */
+  TfEmergence *emergence;  /* of every mark that passes the mark conditions */
   guint simulated;         /* rows from invented frames */
   double mean_tilt_deg, median_tilt_deg;
   TfNotes *cautions; /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
@@ -91,7 +96,8 @@ typedef struct
 double tf_study_even_floor (TfLedger *ledger, GError **error);
 /** tf_study_rows: ledger rows with the measures made with that even floor where they are there (intake makes
  * them), else with their own. */
-GPtrArray *tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error);
+GPtrArray *
+tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error);
 TfFindings *tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error);
 void tf_findings_free (TfFindings *findings);
 
@@ -106,15 +112,15 @@ void tf_study_point (const TfPoint *point, TfSampleRow *out);
 TfVerdict tf_study_judge_measure (const TfStudy *study, const TfMeasure *measure);
 
 /** tf_findings_build_json: the `laws` document of 6-commands. */
-void tf_findings_build_json (const TfFindings *findings, const TfStudy *study,
-                             JsonBuilder *builder);
+void
+tf_findings_build_json (const TfFindings *findings, const TfStudy *study, JsonBuilder *builder);
 /** tf_findings_dup_words: the numbers as they would stand in a paper, in the current language. */
 char *tf_findings_dup_words (const TfFindings *findings, const TfStudy *study);
 /** tf_verdict_build_members: adds "polarity_tilt_deg", "cycle":{number, sure, reason} and
  * "hale":{verdict, reason, expected, readings} to the open object; readings: [{cycle, verdict}...]
  * when the cycle alone is unsure, else null. */
-void tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row,
-                               JsonBuilder *builder);
+void
+tf_verdict_build_members (const TfVerdict *verdict, const TfSampleRow *row, JsonBuilder *builder);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfStudy, tf_study_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFindings, tf_findings_free)

@@ -69,5 +69,6 @@ main (int argc, char **argv)
   test_laws_add_proportion ();
   test_laws_add_hale ();
   test_laws_add_joy ();
+  test_laws_add_emergence ();
   return g_test_run ();
 }

@@ -8,6 +8,7 @@
 #include "tf-verdict.h"
 
 void test_laws_add_cycle (void);
+void test_laws_add_emergence (void);
 void test_laws_add_hale (void);
 void test_laws_add_joy (void);
 void test_laws_add_proportion (void);
