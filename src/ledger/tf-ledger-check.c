@@ -12,7 +12,7 @@
 
 /* -- digests of machine rows
  * ------------------------------------------------------------------------- */
-const char *const tf_digest_tables[] = { "frame", "measure", "hint", NULL };
+const char *const tf_digest_tables[] = { "frame", "measure", "hint", "complexity", NULL };
 
 /* All that never changes in a row. */
 static char *
@@ -24,6 +24,9 @@ digest_columns (const char *table)
                      " noise_gauss, refusal, info");
   if (strcmp (table, "hint") == 0)
     return g_strdup ("cid, frame, rule, ordinal, unipolar, outline, measure, notes");
+  if (strcmp (table, "complexity") == 0)
+    return g_strdup ("cid, measure, method, program, given, mu, r_mx, strong_gradient_length_mm, "
+                     "gradient_weighted_gauss, flux_near_mx, strong_pieces, delta_candidate");
   g_autofree char *measured = tf_measure_dup_columns ("");
   return g_strconcat ("cid, frame, method, program, time_text, year, cautions, ", measured, NULL);
 }

@@ -33,15 +33,20 @@ read_hint (sqlite3_stmt *query, GError **error)
   return hint;
 }
 
+/* The hints of one run; @figures: (element-type TfComplexityRow) one each, all by one @method, or
+ * none. */
 static GPtrArray *
-read_hints (TfLedger *part, gint64 frame, gint64 rule, GError **error)
+read_hints (TfLedger *part, gint64 frame, gint64 rule, GArray *figures, char **method,
+            GError **error)
 {
   g_autofree char *measured = tf_measure_dup_columns ("e.");
   g_autofree char *sql = g_strconcat (
-      "SELECT h.unipolar, h.outline, h.notes, ", measured,
-      " FROM hint h JOIN measure e ON e.id = h.measure WHERE h.frame = ?1 AND h.rule = ?2"
+      "SELECT h.unipolar, h.outline, h.notes, ", measured, ", ", tf_complexity_columns_sql,
+      ", c.text FROM hint h JOIN measure e ON e.id = h.measure", tf_complexity_join_sql,
+      " LEFT JOIN method c ON c.id = x.method WHERE h.frame = ?1 AND h.rule = ?2"
       " ORDER BY h.ordinal",
       NULL);
+  int after = 3 + (int)tf_measure_n_columns ();
   g_autoptr (GPtrArray) hints = g_ptr_array_new_with_free_func (hint_free);
   g_autoptr (sqlite3_stmt) query = tf_query (part, error, sql, "ii", frame, rule);
   int more = -1;
@@ -51,7 +56,15 @@ read_hints (TfLedger *part, gint64 frame, gint64 rule, GError **error)
       if (hint == NULL)
         return NULL;
       g_ptr_array_add (hints, hint);
+      TfComplexityRow row;
+      if (!tf_complexity_from_row (&row, query, after))
+        continue;
+      if (*method == NULL)
+        *method = g_strdup (tf_column_text (query, after + TF_COMPLEXITY_COLUMNS));
+      g_array_append_val (figures, row);
     }
+  if (figures->len != hints->len) /* an older part: figures are worked out later */
+    g_array_set_size (figures, 0);
   return more == 0 ? g_steal_pointer (&hints) : NULL;
 }
 
@@ -72,10 +85,15 @@ gather_runs (TfLedger *ledger, TfLedger *part, gint64 from, gint64 to, guint *n_
       const char *rule = tf_column_text (query, 1);
       if (tf_ledger_has_hints (ledger, to, rule))
         continue;
-      g_autoptr (GPtrArray) hints = read_hints (part, from, sqlite3_column_int64 (query, 0), error);
+      g_autofree char *method = NULL;
+      g_autoptr (GArray) figures = g_array_new (FALSE, FALSE, sizeof (TfComplexityRow));
+      g_autoptr (GPtrArray) hints = read_hints (part, from, sqlite3_column_int64 (query, 0),
+                                                figures, &method, error);
+      TfComplexityRows complexity
+          = { method, (const TfComplexityRow *)(void *)figures->data, figures->len };
       if (hints == NULL
           || !tf_hints_put (ledger, to, rule, hints, tf_column_text (query, 2),
-                            tf_column_text (query, 3), error))
+                            &complexity, tf_column_text (query, 3), error))
         return FALSE;
       *n_hints += hints->len;
     }

@@ -10,8 +10,8 @@
 
 static gint64
 put_hint (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *rule, gint64 rule_key,
-          guint ordinal, const TfHint *hint, const char *method, const char *program,
-          GError **error)
+          guint ordinal, const TfHint *hint, const char *method,
+          const TfComplexityRows *complexity, const char *program, GError **error)
 {
   g_autofree char *number = g_strdup_printf ("%u", ordinal);
   g_autofree char *cid = tf_content_id ("tiltfield hint 1", frame_cid, rule, number, NULL);
@@ -23,6 +23,9 @@ put_hint (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *rul
   gint64 measure = tf_measure_put (ledger, frame, frame_cid, method, outline, &hint->measure,
                                    program, NULL, error);
   if (measure == 0
+      || (complexity != NULL && ordinal <= complexity->n
+          && !tf_complexity_put (ledger, measure, complexity->method,
+                                 &complexity->rows[ordinal - 1], program, error))
       || !tf_run (ledger, error,
                   "INSERT INTO hint (cid, frame, rule, ordinal, unipolar, outline, measure, notes)"
                   " VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7, ?8)",
@@ -35,7 +38,8 @@ put_hint (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *rul
 
 gboolean
 tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
-              const char *method, const char *program, GError **error)
+              const char *method, const TfComplexityRows *complexity, const char *program,
+              GError **error)
 {
   gint64 rule_key = tf_method_key (ledger, rule, error);
   gint64 method_key = rule_key != 0 ? tf_method_key (ledger, method, error) : 0;
@@ -56,7 +60,7 @@ tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray 
     return TRUE;
   for (guint k = 0; k < hints->len; k++)
     if (put_hint (ledger, frame, cid, rule, rule_key, k + 1, g_ptr_array_index (hints, k), method,
-                  program, error)
+                  complexity, program, error)
         == 0)
       return FALSE;
   return tf_run (ledger, error, "INSERT INTO run (frame, rule, method, n) VALUES (?1, ?2, ?3, ?4)",
@@ -65,18 +69,25 @@ tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray 
 }
 
 gboolean
-tf_ledger_add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
-                     const char *method, GError **error)
+tf_ledger_add_hints_with (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
+                          const char *method, const TfComplexityRows *complexity, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && rule != NULL && hints != NULL && method != NULL, FALSE);
   if (!tf_ledger_begin (ledger, error))
     return FALSE;
-  if (!tf_hints_put (ledger, frame, rule, hints, method, TF_VERSION, error))
+  if (!tf_hints_put (ledger, frame, rule, hints, method, complexity, TF_VERSION, error))
     {
       tf_ledger_rollback (ledger);
       return FALSE;
     }
   return tf_ledger_commit (ledger, error);
+}
+
+gboolean
+tf_ledger_add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
+                     const char *method, GError **error)
+{
+  return tf_ledger_add_hints_with (ledger, frame, rule, hints, method, NULL, error);
 }
 
 gboolean

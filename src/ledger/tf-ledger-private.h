@@ -17,7 +17,7 @@
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION     1
+#define TF_LEDGER_VERSION     2
 #define TF_ID_HEX             32 /* digits of a UUID */
 #define TF_CID_HEX            64 /* digits of a content id or hash */
 
@@ -93,7 +93,8 @@ typedef struct
   const char *const *sql; /* scripts, NULL-ended; all migrations run in one transaction */
 } TfMigration;
 extern const TfMigration tf_ledger_migrations[]; /* ends with sql NULL */
-extern const char tf_ledger_projection_sql[];    /* the tables that check makes anew */
+/* The tables that check makes anew, a script a version, NULL-ended. */
+extern const char *const tf_ledger_projections[];
 /* @is_new: an empty file becomes a ledger. */
 gboolean tf_ledger_migrate (TfLedger *ledger, int from, gboolean is_new, GError **error);
 
@@ -140,8 +141,10 @@ gint64 tf_frame_put (TfLedger *ledger, const char *path, const char *checksum, i
                      const TfFrameInfo *info, double noise_gauss, GError **error);
 gboolean tf_place_put (TfLedger *ledger, gint64 frame, const char *path, gint64 size, gint64 mtime,
                        GError **error);
+/* @complexity: figures of each hint by one method; n 0: none. */
 gboolean tf_hints_put (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
-                       const char *method, const char *program, GError **error);
+                       const char *method, const TfComplexityRows *complexity, const char *program,
+                       GError **error);
 
 /* -- tf-ledger-measures.c
  * -------------------------------------------------------------------------- */
@@ -155,6 +158,20 @@ gint64 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, co
 void tf_measure_from_row (TfMeasure *measure, sqlite3_stmt *query, int column);
 char *tf_measure_dup_columns (const char *alias); /* "e.time, e.field_used, ..." */
 guint tf_measure_n_columns (void);
+
+/* -- tf-ledger-complexity.c
+ * ------------------------------------------------------------------------ */
+/* Puts the figures of a measured outline in once; inside a transaction. */
+gboolean tf_complexity_put (TfLedger *ledger, gint64 measure, const char *method,
+                            const TfComplexityRow *row, const char *program, GError **error);
+extern const char tf_complexity_columns_sql[]; /* "x.given, x.mu ..." */
+extern const char tf_complexity_join_sql[];    /* x: the newest figures of measure e */
+enum
+{
+  TF_COMPLEXITY_COLUMNS = 8
+};
+/* Reads them beginning at @column. FALSE: nobody worked them out. */
+gboolean tf_complexity_from_row (TfComplexityRow *row, sqlite3_stmt *query, int column);
 
 /* -- tf-ledger-info.c
  * ------------------------------------------------------------------------------ */

@@ -288,6 +288,42 @@ project_note (TfLedger *ledger, const char *subject, JsonObject *body, GError **
                     "iiti", region, person, text, current.clock);
 }
 
+/* -- shifts
+ * ---------------------------------------------------------------------------------------- */
+static gboolean
+project_resolved (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
+{
+  g_auto (Current) current = { 0 };
+  gint64 region = region_key (ledger, body);
+  gint64 author
+      = key_of (ledger, "SELECT id FROM person WHERE uid = ?1", body, "author", TF_ID_HEX);
+  if (region == 0 || author == 0)
+    return damaged (ledger, "resolve", error);
+  if (!find_current (ledger, subject, &current, error)
+      || !tf_run (ledger, error, "DELETE FROM resolved WHERE region = ?1 AND author = ?2", "ii",
+                  region, author))
+    return FALSE;
+  const char *text = current.body != NULL ? body_text (current.body, "text") : "";
+  return *text == '\0'
+         || tf_run (ledger, error,
+                    "INSERT INTO resolved (region, author, text, person, clock) VALUES (?1, ?2, "
+                    "?3, ?4, ?5)",
+                    "iitii", region, author, text, person_key (ledger, current.body),
+                    current.clock);
+}
+
+static gboolean
+project_shift (TfLedger *ledger, const TfAct *act, GError **error)
+{
+  const char *uid = body_id (act->body, "shift", TF_ID_HEX);
+  gint64 person = person_key (ledger, act->body);
+  if (uid == NULL || person == 0)
+    return damaged (ledger, "shift", error);
+  return tf_run (ledger, error,
+                 "INSERT OR IGNORE INTO shift (uid, person, time, clock) VALUES (?1, ?2, ?3, ?4)",
+                 "hidi", uid, person, tf_json_member_number (act->body, "time"), act->clock);
+}
+
 static gboolean
 project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
                  GError **error)
@@ -298,6 +334,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return project_dropped (ledger, subject, body, error);
   if (strcmp (kind, "class") == 0)
     return project_class (ledger, subject, body, error);
+  if (strcmp (kind, "resolve") == 0)
+    return project_resolved (ledger, subject, body, error);
   return project_note (ledger, subject, body, error);
 }
 
@@ -343,7 +381,7 @@ put_deed (TfLedger *ledger, const TfAct *act, GError **error)
 gboolean
 tf_act_is_deed (const char *kind)
 {
-  static const char *const kinds[] = { "keep", "withdraw", "drop", "class", "note", NULL };
+  static const char *const kinds[] = { "keep", "withdraw", "drop", "class", "note", "resolve", NULL };
   return g_strv_contains (kinds, kind);
 }
 
@@ -359,6 +397,8 @@ tf_project_act (TfLedger *ledger, const TfAct *act, GError **error)
   if (strcmp (act->kind, "keep") == 0
       && !(put_region (ledger, act->body, error) && put_mark (ledger, act, error)))
     return FALSE;
+  if (strcmp (act->kind, "shift") == 0)
+    return project_shift (ledger, act, error);
   if (strcmp (act->kind, "undo") == 0 || strcmp (act->kind, "redo") == 0)
     return project_undo (ledger, act, error);
   return !tf_act_is_deed (act->kind)

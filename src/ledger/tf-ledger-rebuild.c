@@ -133,6 +133,9 @@ static const char *const compared[][2] = {
   { "dropped", "SELECT hint, " PERSON " FROM @.dropped t" },
   { "class", "SELECT frame, class, evidence, clock, " PERSON ", " REGION " FROM @.class t" },
   { "note", "SELECT text, clock, " PERSON ", " REGION " FROM @.note t" },
+  { "resolved", "SELECT text, clock, " PERSON ", " REGION ", (SELECT x.uid FROM @.person x WHERE "
+                "x.id = t.author) FROM @.resolved t" },
+  { "shift", "SELECT uid, time, clock, " PERSON " FROM @.shift t" },
   { "point", "SELECT hint, CASE hint WHEN 1 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id "
              "= t.mark) END, frame, "
              "CASE hint WHEN 1 THEN region ELSE " REGION
@@ -166,8 +169,10 @@ compare_table (TfLedger *scratch, const char *table, const char *rows, TfNotes *
 static gboolean
 rebuild (TfLedger *scratch, TfNotes *findings, GError **error)
 {
-  if (!tf_run_script (scratch, tf_ledger_projection_sql, error)
-      || !tf_run_script (scratch, "BEGIN", error) || !replay (scratch, findings, error))
+  for (guint k = 0; tf_ledger_projections[k] != NULL; k++)
+    if (!tf_run_script (scratch, tf_ledger_projections[k], error))
+      return FALSE;
+  if (!tf_run_script (scratch, "BEGIN", error) || !replay (scratch, findings, error))
     return FALSE;
   for (guint k = 0; k < G_N_ELEMENTS (compared); k++)
     if (!compare_table (scratch, compared[k][0], compared[k][1], findings, error))

@@ -72,7 +72,7 @@ read_outline (TfLedger *ledger, const char *text, GError **error)
 }
 
 static TfRow *
-read_row (sqlite3_stmt *query)
+read_row (sqlite3_stmt *query, gboolean complexity)
 {
   TfRow *row = g_new0 (TfRow, 1);
   row->mark = sqlite3_column_int64 (query, 0);
@@ -98,6 +98,9 @@ read_row (sqlite3_stmt *query)
   row->time_source = dup_column (query, FIRST_COMMON + 7);
   row->simulated = sqlite3_column_int (query, FIRST_COMMON + 8);
   tf_measure_from_row (&row->measure, query, FIRST_MEASURED);
+  if (complexity)
+    row->complexity_tried = tf_complexity_from_row (
+        &row->complexity, query, FIRST_MEASURED + (int)tf_measure_n_columns ());
   return row;
 }
 
@@ -120,16 +123,19 @@ tf_row_free (TfRow *row)
 /* @where is appended; ?1 is @key. */
 static gboolean
 read_rows (TfLedger *ledger, gboolean hints, const char *where, gint64 key, gboolean outlines,
-           GPtrArray *rows, GError **error)
+           gboolean complexity, GPtrArray *rows, GError **error)
 {
   g_autofree char *measured = tf_measure_dup_columns ("e.");
   g_autofree char *sql = g_strconcat ("SELECT ", hints ? HINT_COLUMNS : MARK_COLUMNS, measured,
-                                      hints ? HINT_FROM : MARK_FROM, where, NULL);
+                                      complexity ? ", " : "",
+                                      complexity ? tf_complexity_columns_sql : "",
+                                      hints ? HINT_FROM : MARK_FROM,
+                                      complexity ? tf_complexity_join_sql : "", where, NULL);
   g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, sql, "i", key);
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     {
-      TfRow *row = read_row (query);
+      TfRow *row = read_row (query, complexity);
       g_ptr_array_add (rows, row);
       if (outlines
           && (row->outline = read_outline (ledger, tf_column_text (query, 12), error)) == NULL)
@@ -171,11 +177,11 @@ tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error)
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
   if (query->marks
       && !read_rows (ledger, FALSE, " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)", query->frame,
-                     !query->no_outlines, rows, error))
+                     !query->no_outlines, query->complexity, rows, error))
     return NULL;
   if (query->hints
       && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame,
-                     !query->no_outlines, rows, error))
+                     !query->no_outlines, query->complexity, rows, error))
     return NULL;
   g_ptr_array_sort (rows, compare_rows);
   return g_steal_pointer (&rows);
@@ -187,7 +193,7 @@ tf_ledger_row (TfLedger *ledger, gint64 mark, gboolean is_hint, GError **error)
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
   if (!read_rows (ledger, is_hint, is_hint ? " WHERE h.id = ?1" : " WHERE m.id = ?1", mark, TRUE,
-                  rows, error))
+                  TRUE, rows, error))
     return NULL;
   if (rows->len == 0)
     {

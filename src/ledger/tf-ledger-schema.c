@@ -13,6 +13,7 @@
  *       |  \--< place                     where the file was last seen, its size and mtime (local, does not travel)
  *       |  \--< frame_over        later   this frame supersedes that one (newer processing)
  *     instrument                  later   origin of frames; its scale is a deed (`scale`), offered by `pair`
+ *     complexity >-- measure, method      figures of one measured outline, given or not, by one complexity method
  *     outside, outside_row        later   tables brought in: source, checksum, row; content id of source and row number
  *     orientation                 later   what the orientation witness said of two frames
  *
@@ -35,6 +36,8 @@
  *     drop          hint, person                   dropped
  *     class         region, frame, person          class
  *     note          region, person                 note
+ *     resolve       region, person (of the note)   resolved       that text of that note is settled; another text is open again
+ *     shift         shift                          shift          a desk handed over; what came later is new to the next
  *     undo, redo    that of the act named          deed
  *     renumber      region                 later   region.number      two replicas with one letter
  *     link, cut     region, region         later   lineage            passages of one region on later rotations
@@ -126,8 +129,8 @@
   "digest BLOB) STRICT;"                                                                           \
   "CREATE INDEX hint_frame ON hint (frame);"
 
-/* deed.undone: 0 stands; 1 undone; 2 undone for good, because a new deed came. */
-const char tf_ledger_projection_sql[] =
+/* The tables that check makes anew, a script a version. deed.undone: 0 stands; 1 undone; 2 undone for good, because a new deed came. */
+static const char projection_1[] =
     "CREATE TABLE person (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, "
     "name TEXT NOT NULL) STRICT;"
     "CREATE TABLE deed (replica INTEGER NOT NULL, seq INTEGER NOT NULL, "
@@ -168,6 +171,16 @@ const char tf_ledger_projection_sql[] =
     "witnesses_differ INTEGER NOT NULL, PRIMARY KEY (hint, mark)) STRICT, WITHOUT ROWID;"
     "CREATE INDEX point_frame ON point (frame, hint);";
 
+static const char projection_2[]
+    = "CREATE TABLE resolved (region INTEGER NOT NULL REFERENCES region (id), "
+      "author INTEGER NOT NULL REFERENCES person (id), text TEXT NOT NULL, "
+      "person INTEGER NOT NULL REFERENCES person (id), clock INTEGER NOT NULL, "
+      "PRIMARY KEY (region, author)) STRICT, WITHOUT ROWID;"
+      "CREATE TABLE shift (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, "
+      "person INTEGER NOT NULL REFERENCES person (id), time REAL, clock INTEGER NOT NULL) STRICT;";
+
+const char *const tf_ledger_projections[] = { projection_1, projection_2, NULL };
+
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
   "person INTEGER NOT NULL REFERENCES person (id), text TEXT NOT NULL, "                           \
@@ -205,7 +218,8 @@ const char tf_ledger_projection_sql[] =
   "CASE e.floor_kind WHEN 0 THEN 'local' ELSE 'even' END AS floor_kind, "                          \
   "e.cautions AS cautions "
 
-#define VIEW_SQL                                                                                   \
+/* The two views of the flat columns; @columns and @join: what later versions add. */
+#define MARKS_VIEW_SQL(columns, join)                                                              \
   "CREATE VIEW marks AS SELECT g.number AS region, lower (hex (m.uid)) AS passage, "               \
   "lower (hex (m.uid)) AS mark, "                                                                  \
   "CASE m.origin WHEN 0 THEN 'kept as hinted' WHEN 1 THEN 'changed' ELSE 'drawn new' END AS origin, " \
@@ -213,13 +227,18 @@ const char tf_ledger_projection_sql[] =
   "FROM class c WHERE c.region = m.region AND c.frame = m.frame AND c.person = m.person), "        \
   "(SELECT c.class FROM class c "                                                                  \
   "WHERE c.region = m.region AND c.frame = m.frame ORDER BY c.clock DESC LIMIT 1))" FLAT_SQL_3     \
-  "FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person "                 \
+  columns "FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person "         \
   "JOIN measure e ON e.id = m.measure JOIN frame f ON f.id = m.frame "                             \
-  "JOIN method t ON t.id = e.method WHERE m.live;"                                                 \
+  "JOIN method t ON t.id = e.method " join "WHERE m.live;"
+#define HINTS_VIEW_SQL(columns, join)                                                              \
   "CREATE VIEW hints AS SELECT NULL AS region, NULL AS passage, lower (hex (h.cid)) AS mark, "     \
   "'hint' AS origin, NULL AS label, " FLAT_SQL " NULL AS person, " FLAT_SQL_2 " NULL"              \
-  FLAT_SQL_3 "FROM point q JOIN hint h ON h.id = q.mark JOIN measure e ON e.id = h.measure "       \
-  "JOIN frame f ON f.id = h.frame JOIN method t ON t.id = e.method WHERE q.hint = 1;"              \
+  FLAT_SQL_3 columns "FROM point q JOIN hint h ON h.id = q.mark JOIN measure e ON e.id = h.measure " \
+  "JOIN frame f ON f.id = h.frame JOIN method t ON t.id = e.method " join "WHERE q.hint = 1;"
+
+#define VIEW_SQL                                                                                   \
+  MARKS_VIEW_SQL ("", "")                                                                          \
+  HINTS_VIEW_SQL ("", "")                                                                          \
   "CREATE VIEW frames AS SELECT f.path AS frame, f.checksum AS frame_checksum, f.hdu AS hdu, "     \
   "f.plane AS plane, f.kind AS kind, f.role AS role, f.time_text AS time, "                        \
   "f.time_source AS time_source, f.instrument AS instrument, f.vantage AS vantage, "               \
@@ -239,9 +258,36 @@ const char tf_ledger_projection_sql[] =
   "JOIN deed d ON d.replica = a.replica AND d.seq = a.seq LEFT "                                   \
   "JOIN person p ON p.id = d.person ORDER BY a.clock, r.id, a.seq;"
 
-static const char *const version_1[] = { LOG_SQL MACHINE_SQL, tf_ledger_projection_sql, LOCAL_SQL VIEW_SQL, NULL };
+/* -- version 2: complexity and shifts ----------------------------------------------------------- */
+#define COMPLEXITY_SQL                                                                             \
+  "CREATE TABLE complexity (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, "                    \
+  "measure INTEGER NOT NULL REFERENCES measure (id), "                                             \
+  "method INTEGER NOT NULL REFERENCES method (id), program TEXT NOT NULL, "                        \
+  "given INTEGER NOT NULL, mu REAL, r_mx REAL, strong_gradient_length_mm REAL, "                   \
+  "gradient_weighted_gauss REAL, flux_near_mx REAL, strong_pieces INTEGER, "                       \
+  "delta_candidate INTEGER, digest BLOB) STRICT;"                                                  \
+  "CREATE INDEX complexity_measure ON complexity (measure);"
+
+#define COMPLEXITY_COLUMNS                                                                         \
+  ", x.r_mx AS r_schrijver_mx, x.strong_gradient_length_mm AS strong_gradient_length_mm, "         \
+  "x.gradient_weighted_gauss AS gradient_weighted_length_gauss, "                                  \
+  "x.flux_near_mx AS flux_near_line_mx, x.strong_pieces AS strong_pieces, "                        \
+  "x.delta_candidate AS delta_candidate, x.mu AS complexity_mu "
+#define COMPLEXITY_JOIN                                                                            \
+  "LEFT JOIN complexity x ON x.id = (SELECT max (y.id) FROM complexity y "                         \
+  "WHERE y.measure = e.id) "
+
+static const char version_2_views[]
+    = "DROP VIEW marks; DROP VIEW hints; "
+    MARKS_VIEW_SQL (COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
+    HINTS_VIEW_SQL (COMPLEXITY_COLUMNS, COMPLEXITY_JOIN);
+
+static const char *const version_1[] = { LOG_SQL MACHINE_SQL, projection_1, LOCAL_SQL VIEW_SQL, NULL };
+
+static const char *const version_2[] = { COMPLEXITY_SQL, projection_2, version_2_views, NULL };
 
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
+  { 2, version_2 },
   { 0, NULL },
 };

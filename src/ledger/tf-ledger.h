@@ -17,6 +17,7 @@
 
 #include <glib.h>
 
+#include "tf-complexity.h"
 #include "tf-frame.h"
 #include "tf-hint.h"
 #include "tf-measure.h"
@@ -110,6 +111,33 @@ TfFrameRow *tf_ledger_frame (TfLedger *ledger, gint64 id, GError **error);
  * the rule was run. @rule, @method: canonical option texts. */
 gboolean tf_ledger_add_hints (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
                               const char *method, GError **error);
+/** TfComplexityRow: the figures of one measured outline as they are kept. They describe the field and are no forecast. */
+typedef struct
+{
+  gboolean there;  /* worked out and given; else all below but mu is without meaning */
+  double mu;       /* at the middle of the outline */
+  double r_mx;     /* Schrijver's R */
+  double strong_gradient_length_mm, gradient_weighted_gauss, flux_near_mx;
+  guint pieces;    /* of strong field */
+  gboolean delta_candidate;
+} TfComplexityRow;
+/** TfComplexityRows: one a hint, by one method (canonical option text). */
+typedef struct
+{
+  const char *method;
+  const TfComplexityRow *rows;
+  guint n;
+} TfComplexityRows;
+/** tf_complexity_row: what is kept of @complexity. */
+TfComplexityRow tf_complexity_row (const TfComplexity *complexity);
+/** tf_ledger_add_hints_with: as tf_ledger_add_hints, with the figures of each hint in the same transaction. */
+gboolean tf_ledger_add_hints_with (TfLedger *ledger, gint64 frame, const char *rule, const GPtrArray *hints,
+                                   const char *method, const TfComplexityRows *complexity, GError **error);
+/** tf_ledger_add_complexity: the figures of marks or hints that are there, in one transaction, each once. Whether there was a figure or
+ * none (near the limb) is kept, so that nobody looks twice. Parallel arrays of @n; @hints: the key is a hint's. */
+gboolean tf_ledger_add_complexity (TfLedger *ledger, guint n, const gint64 *keys, const gboolean *hints, const char *method,
+                                   const TfComplexityRow *rows, GError **error);
+
 /** tf_ledger_has_hints: whether the rule was run on the frame. */
 gboolean tf_ledger_has_hints (TfLedger *ledger, gint64 frame, const char *rule);
 
@@ -158,6 +186,28 @@ gboolean tf_ledger_set_note (TfLedger *ledger, gint64 region, gint64 person, con
 /** tf_ledger_set_class: Mount Wilson class of a region at a time by a person: "β", "βγδ" ...; "" clears. @evidence: "magnetogram", ... */
 gboolean tf_ledger_set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text,
                               const char *evidence, GError **error);
+/* -- shifts and notes ------------------------------------------------------------------------- */
+/** TfRegionNote: what one person says of one region now. */
+typedef struct
+{
+  gint64 region, author; /* local keys */
+  char *text, *person;
+  TfTime written;        /* when it was written; this machine's clock at the time */
+  gboolean resolved;     /* somebody settled this text */
+  char *resolver;        /* who did; NULL */
+} TfRegionNote;
+void tf_region_note_free (TfRegionNote *note);
+/** tf_ledger_notes: (element-type TfRegionNote): all that stand, newest first. */
+GPtrArray *tf_ledger_notes (TfLedger *ledger, GError **error);
+/** tf_ledger_resolve: the note of @author on @region, as it stands now, is settled (or, @resolved FALSE, open again). STATE without such a
+ * note. Another text is open again by itself. */
+gboolean tf_ledger_resolve (TfLedger *ledger, gint64 region, gint64 author, gint64 person, gboolean resolved, GError **error);
+/** tf_ledger_hand_over: a shift ends at @time (its frame's or the clock's); cannot be undone, a later one takes its place. */
+gboolean tf_ledger_hand_over (TfLedger *ledger, gint64 person, TfTime time, GError **error);
+/** tf_ledger_last_shift: when the last hand-over was recorded, by this machine's clock; unknown without one. @person: (out) (nullable)
+ * (transfer full) */
+TfTime tf_ledger_last_shift (TfLedger *ledger, char **person);
+
 /** tf_ledger_undo: undoes the person's last deed of this replica that is not undone (redo: the last undo). The act undone is named in
  * @what ("keep", "drop", ...); STATE when there is none. */
 gboolean tf_ledger_undo (TfLedger *ledger, gint64 person, char **what, GError **error);
@@ -182,6 +232,8 @@ typedef struct
   gboolean unipolar;    /* hints */
   TfOutline *outline;   /* NULL when the query asked for none */
   TfMeasure measure;    /* time, floors, poles, tilt, cautions ... */
+  TfComplexityRow complexity; /* when the query asked for it */
+  gboolean complexity_tried;  /* figures were worked out or refused */
   char *time_source;
   gboolean simulated;
 } TfRow;
@@ -192,6 +244,7 @@ typedef struct
   gboolean marks, hints; /* which */
   gint64 frame;          /* 0: all */
   gboolean judged_hints; /* hints that a person kept or dropped, too */
+  gboolean complexity;   /* figures, too */
   gboolean no_outlines;  /* outline is NULL: several times faster where it is not asked for (studies, tables) */
 } TfRowQuery;
 /** tf_ledger_rows: (element-type TfRow) live marks and open hints in time order. */
@@ -239,6 +292,7 @@ gboolean tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLedger, tf_ledger_close)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFrameRow, tf_frame_row_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRegionNote, tf_region_note_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRow, tf_row_free)
 
 G_END_DECLS

@@ -31,6 +31,13 @@ set_up_full (Fixture *f, gconstpointer data)
                                       "magnetogram", &error));
   g_assert_true (
       tf_ledger_set_note (f->ledger, fixture_region (f->ledger, one), other, "look again", &error));
+  const gboolean not_hint = FALSE;
+  const TfComplexityRow figures = { .there = TRUE, .mu = 0.9, .r_mx = 2.5e21, .pieces = 3 };
+  g_assert_true (tf_ledger_add_complexity (f->ledger, 1, &one, &not_hint, "inversion-lines/1",
+                                           &figures, &error));
+  g_assert_true (tf_ledger_resolve (f->ledger, fixture_region (f->ledger, one), other, person, TRUE,
+                                    &error));
+  g_assert_true (tf_ledger_hand_over (f->ledger, person, TF_TIME_UNKNOWN, &error));
   fixture_keep (f->ledger, 2, other, 0, 0, 13);
   g_assert_true (tf_ledger_undo (f->ledger, other, NULL, &error));
   g_assert_no_error (error);
@@ -75,6 +82,8 @@ static const Tampering tamperings[] = {
   { "an-outline", "UPDATE mark SET outline = replace (outline, '21', '22')", "check-projection" },
   { "a-class", "UPDATE class SET class = 'α'", "check-projection" },
   { "a-note-gone", "DELETE FROM note", "check-projection" },
+  { "a-note-settled-by-another", "UPDATE resolved SET person = 2", "check-projection" },
+  { "a-shift-gone", "DELETE FROM shift", "check-projection" },
   { "a-drop-more", "INSERT INTO dropped VALUES (4, 1)", "check-projection" },
   { "an-undone-deed", "UPDATE deed SET undone = 0", "check-projection" },
   { "a-region-number", "UPDATE region SET number = 'T2013-0007' WHERE id = 1", "check-projection" },
@@ -89,6 +98,7 @@ static const Tampering tamperings[] = {
     "check-points" },
   { "a-measure", "UPDATE measure SET axis_tilt_deg = -axis_tilt_deg WHERE id = 2",
     "check-machine-row" },
+  { "a-complexity", "UPDATE complexity SET r_mx = 10 * r_mx", "check-machine-row" },
   { "a-hint's-outline", "UPDATE hint SET outline = replace (outline, '2', '3') WHERE id = 1",
     "check-machine-row" },
   { "a-frame's-time", "UPDATE frame SET time_text = '2001-01-01T00:00:00Z' WHERE id = 1",

@@ -55,7 +55,7 @@ test_create (Fixture *f, gconstpointer data)
       other, "SELECT (SELECT journal_mode FROM pragma_journal_mode) || ' ' || (SELECT"
              " application_id FROM pragma_application_id) || ' ' || (SELECT user_version"
              " FROM pragma_user_version)");
-  g_assert_cmpstr (modes, ==, "wal 1413901412 1");
+  g_assert_cmpstr (modes, ==, "wal 1413901412 2");
   g_autofree char *loose = fixture_sql_text (
       other, "SELECT count (*) FROM pragma_table_list WHERE schema = 'main' AND type ="
              " 'table' AND strict = 0 AND name NOT LIKE 'sqlite%'");
@@ -120,7 +120,7 @@ test_migration (Fixture *f, gconstpointer data)
   keep_one (f, ledger, 1);
   fixture_check (ledger, "check-schema"); /* a table of nobody's */
   g_autofree char *now = fixture_sql_text (path, kept), *then = fixture_sql_text (backup, kept);
-  g_assert_cmpstr (now, ==, "42 1");
+  g_assert_cmpstr (now, ==, "42 2");
   g_assert_cmpstr (then, ==, "42 0");
   g_clear_pointer (&ledger, tf_ledger_close);
   ledger = fixture_open (f, path, &error);

@@ -12,5 +12,6 @@ main (int argc, char **argv)
   add_faults_tests ();
   add_file_tests ();
   add_machine_tests ();
+  add_shift_tests ();
   return g_test_run ();
 }

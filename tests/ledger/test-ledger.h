@@ -48,5 +48,6 @@ void add_check_tests (void);
 void add_faults_tests (void);
 void add_file_tests (void);
 void add_machine_tests (void);
+void add_shift_tests (void);
 
 #define FIXTURE_TEST(path, func) g_test_add (path, Fixture, NULL, fixture_set_up, func, fixture_tear_down)
