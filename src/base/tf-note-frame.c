@@ -23,6 +23,7 @@ const TfNoteKind tf_note_kinds_frame[] = {
   { "field-kind-unknown", TF_NOTE_CAUTION, N_("The header does not say whether this map holds the radial or the line-of-sight field: say it once for this instrument.") },
   { "fill-keyword", TF_NOTE_REPAIR, N_("{0} = {1:.6g} stands for no value: such pixels are left out.") },
   { "fill-off-disk", TF_NOTE_REPAIR, N_("Pixels off the disk all hold {0:.6g} and BLANK does not say so: they are left out.") },
+  { "geometry-by-hand", TF_NOTE_CAUTION, N_("The geometry was corrected by hand: centre ({0:.2f}, {1:.2f}), radius {2:.2f} pixels, solar north {3:.2f}° from image up. Places are by the correction, not by the header.") },
   { "gps-time", TF_NOTE_REPAIR, N_("TIME-OBS = {0} is GPS time: {1:.0f} s are taken off to make UTC.") },
   { "ground-network", TF_NOTE_REPAIR, N_("Ground-network header: centre ({0:.2f}, {1:.2f}) and radius {2:.2f} pixels give a scale of {3:.4f}″ a pixel.") },
   { "h-alpha", TF_NOTE_REFUSAL, N_("{0} = '{1}': a picture in hydrogen alpha, not a magnetogram; give the magnetogram of the same time.") },

@@ -9,6 +9,7 @@
 
 #include "tf-noise-private.h"
 #include "tf-pyramid-private.h"
+#include "tf-witness.h"
 
 struct _TfFrame
 {
@@ -59,6 +60,26 @@ tf_frame_new (TfFrameInfo *info, const float *pixels, const TfWork *work)
   return tf_frame_new_take (info, copy, &pyramid, "", 1, work);
 }
 
+/* What was said of the limb was said of the other geometry. */
+static void
+judge_again (TfFrame *frame)
+{
+  const TfGeometry *g = &frame->info->geometry;
+  TfNotes *cautions = frame->info->cautions;
+  double x = NAN, y = NAN;
+  for (guint k = tf_notes_get_n (cautions); k > 0; k--)
+    {
+      const char *code = tf_note_get_code (tf_notes_get (cautions, k - 1));
+      if (g_str_equal (code, "limb-off") || g_str_equal (code, "header-lies"))
+        g_ptr_array_remove_index (cautions, k - 1);
+    }
+  tf_geometry_disk_centre (g, &x, &y);
+  tf_notes_add (cautions, "geometry-by-hand", "dddd", x, y, tf_geometry_disk_radius (g),
+                tf_geometry_north_angle (g));
+  TfLimbFit fit = tf_limb_fit (tf_pixels_get (frame->pixels), g);
+  tf_limb_judge (&fit, g, cautions);
+}
+
 TfFrame *
 tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const TfWork *work)
 {
@@ -76,6 +97,7 @@ tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const 
   other->noise.correlation = 1;
   if (other->info->role != TF_ROLE_INTENSITY)
     tf_noise_measure (tf_pixels_get (other->pixels), geometry, work, &other->noise);
+  judge_again (other);
   return other;
 }
 

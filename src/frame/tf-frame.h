@@ -59,7 +59,7 @@ TfFrame *tf_frame_open_companion (const char *path, const TfFrameSpec *spec, con
  * copied. Noise and pyramid are made. */
 TfFrame *tf_frame_new (TfFrameInfo *info, const float *pixels, const TfWork *work);
 /** tf_frame_with_geometry: the same pixels under a corrected geometry (a person's correction);
- * noise is made anew. */
+ * noise is made anew, the limb is judged anew, and a note says so. */
 TfFrame *
 tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const TfWork *work);
 TfFrame *tf_frame_ref (TfFrame *frame);

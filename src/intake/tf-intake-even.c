@@ -53,6 +53,15 @@ open_frame (TfLedger *ledger, gint64 id, const TfWork *work)
   return tf_frame_open (its->path, &spec, work, NULL);
 }
 
+/* As the person who marked it corrected it. */
+static TfFrame *
+as_marked (TfFrame *frame, const char *method, const TfWork *work)
+{
+  TfMeasureParams params;
+  TfCorrection correction;
+  return tf_measure_read_method (method, &params, &correction) ? tf_frame_corrected (frame, &correction, work) : NULL;
+}
+
 /* The rows of one frame, from @first on; returns how many there are. */
 static guint
 measure_frame (TfLedger *ledger, const GPtrArray *rows, guint first, double floor_gauss, const TfWork *work, Batch *batch)
@@ -72,7 +81,8 @@ measure_frame (TfLedger *ledger, const GPtrArray *rows, guint first, double floo
         frame = open_frame (ledger, id, work);
       tried = TRUE;
       TfMeasure measure = { 0 };
-      if (frame == NULL || !tf_measure_region (&measure, frame, row->outline, &params, NULL))
+      g_autoptr (TfFrame) seen = frame != NULL ? as_marked (frame, method, work) : NULL;
+      if (seen == NULL || !tf_measure_region (&measure, seen, row->outline, &params, NULL))
         continue;
       g_array_append_val (batch->frames, id);
       g_array_append_val (batch->measures, measure);

@@ -71,13 +71,16 @@ static void
 remeasure (TfLedger *ledger, const TfRow *row, Open *open, TfNotes *findings)
 {
   TfMeasureParams params;
-  if (!tf_options_read_canonical (tf_measure_options, &params, TF_MEASURE_METHOD, row->method))
+  TfCorrection correction;
+  if (!tf_measure_read_method (row->method, &params, &correction))
     return; /* a method of another version: its rows are not this one's to judge */
-  TfFrame *frame = frame_of (ledger, row, open, findings);
-  if (frame == NULL)
+  TfFrame *header = frame_of (ledger, row, open, findings);
+  if (header == NULL)
     return;
   g_auto (TfMeasure) measure = { 0 };
-  const char *what = tf_measure_region (&measure, frame, row->outline, &params, NULL)
+  g_autoptr (TfFrame) frame = tf_frame_corrected (header, &correction, NULL);
+  const char *what = frame != NULL
+                             && tf_measure_region (&measure, frame, row->outline, &params, NULL)
                          ? differing (&measure, &row->measure)
                          : "pixels";
   const char *name = row->is_hint ? row->mark_id : row->region;

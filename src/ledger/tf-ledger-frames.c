@@ -135,8 +135,9 @@ tf_ledger_find_file (TfLedger *ledger, const char *path)
   "f.refusal,"                                                                                     \
   " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 1),"                          \
   " (SELECT count (*) FROM point q WHERE q.frame = f.id AND q.hint = 0),"                          \
-  " EXISTS (SELECT 1 FROM dropped d JOIN hint h ON h.id = d.hint WHERE h.frame = f.id) FROM "      \
-  "frame f "
+  " EXISTS (SELECT 1 FROM dropped d JOIN hint h ON h.id = d.hint WHERE h.frame = f.id),"            \
+  " (SELECT json_group_array (json_array (name, text)) FROM (SELECT p.name, g.text FROM geometry " \
+  "g JOIN person p ON p.id = g.person WHERE g.frame = f.id ORDER BY g.clock DESC)) FROM frame f "
 
 static TfFrameRow *
 read_row (sqlite3_stmt *query, GError **error)
@@ -157,6 +158,7 @@ read_row (sqlite3_stmt *query, GError **error)
   row->n_hints = (guint)sqlite3_column_int (query, 9);
   row->n_marks = (guint)sqlite3_column_int (query, 10);
   row->done = row->n_hints == 0 && (row->n_marks > 0 || sqlite3_column_int (query, 11) != 0);
+  row->geometries = tf_geometries_from_store (tf_column_text (query, 12));
   return row;
 }
 
@@ -170,6 +172,7 @@ tf_frame_row_free (TfFrameRow *row)
   g_free (row->checksum);
   g_free (row->refusal);
   tf_frame_info_free (row->info);
+  g_clear_pointer (&row->geometries, g_ptr_array_unref);
   g_free (row);
 }
 

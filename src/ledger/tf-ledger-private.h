@@ -17,7 +17,7 @@
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION     2
+#define TF_LEDGER_VERSION     3
 #define TF_ID_HEX             32 /* digits of a UUID */
 #define TF_CID_HEX            64 /* digits of a content id or hash */
 
@@ -134,6 +134,10 @@ gboolean tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error);
 gboolean tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error);
 extern const char
     tf_point_all_sql[]; /* every point as it should be, in the order of the table's columns */
+
+/* -- tf-ledger-geometry.c: [["name", "x,y,radius,north"], ...]; NULL when there is none
+ * --------------------------------------------------------------------------- */
+GPtrArray *tf_geometries_from_store (const char *text);
 
 /* -- tf-ledger-frames.c, tf-ledger-hints.c: inside a transaction
  * ------------------------------------- */

@@ -325,6 +325,24 @@ project_shift (TfLedger *ledger, const TfAct *act, GError **error)
 }
 
 static gboolean
+project_geometry (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
+{
+  g_auto (Current) current = { 0 };
+  gint64 frame = frame_key (ledger, body), person = person_key (ledger, body);
+  if (frame == 0 || person == 0)
+    return damaged (ledger, "geometry", error);
+  if (!find_current (ledger, subject, &current, error)
+      || !tf_run (ledger, error, "DELETE FROM geometry WHERE frame = ?1 AND person = ?2", "ii",
+                  frame, person))
+    return FALSE;
+  const char *text = current.body != NULL ? body_text (current.body, "geometry") : "";
+  return *text == '\0'
+         || tf_run (ledger, error,
+                    "INSERT INTO geometry (frame, person, text, clock) VALUES (?1, ?2, ?3, ?4)",
+                    "iiti", frame, person, text, current.clock);
+}
+
+static gboolean
 project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
                  GError **error)
 {
@@ -336,6 +354,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return project_class (ledger, subject, body, error);
   if (strcmp (kind, "resolve") == 0)
     return project_resolved (ledger, subject, body, error);
+  if (strcmp (kind, "geometry") == 0)
+    return project_geometry (ledger, subject, body, error);
   return project_note (ledger, subject, body, error);
 }
 
@@ -381,7 +401,8 @@ put_deed (TfLedger *ledger, const TfAct *act, GError **error)
 gboolean
 tf_act_is_deed (const char *kind)
 {
-  static const char *const kinds[] = { "keep", "withdraw", "drop", "class", "note", "resolve", NULL };
+  static const char *const kinds[] = { "keep", "withdraw", "drop", "class",
+                                       "note", "resolve", "geometry", NULL };
   return g_strv_contains (kinds, kind);
 }
 

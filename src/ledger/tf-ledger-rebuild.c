@@ -136,6 +136,7 @@ static const char *const compared[][2] = {
   { "resolved", "SELECT text, clock, " PERSON ", " REGION ", (SELECT x.uid FROM @.person x WHERE "
                 "x.id = t.author) FROM @.resolved t" },
   { "shift", "SELECT uid, time, clock, " PERSON " FROM @.shift t" },
+  { "geometry", "SELECT frame, text, clock, " PERSON " FROM @.geometry t" },
   { "point", "SELECT hint, CASE hint WHEN 1 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id "
              "= t.mark) END, frame, "
              "CASE hint WHEN 1 THEN region ELSE " REGION

@@ -38,12 +38,12 @@
  *     note          region, person                 note
  *     resolve       region, person (of the note)   resolved       that text of that note is settled; another text is open again
  *     shift         shift                          shift          a desk handed over; what came later is new to the next
+ *     geometry      frame, person                  geometry           a person's correction of a frame; "" = back to the header
  *     undo, redo    that of the act named          deed
  *     renumber      region                 later   region.number      two replicas with one letter
  *     link, cut     region, region         later   lineage            passages of one region on later rotations
  *     passage rows are machine rows of `follow` (content id of rotation law, vantage, first mark); hand-made links are acts
  *     scale         instrument             later   instrument.scale
- *     geometry      frame, person          later   a correction of a frame by hand
  *     divide        study, minimum, hemisphere     later   divide      points, band; set back to computed = undo
  *     sieve, study  study                  later   sieve, study, edition (named, checksummed state of a study)
  *     case          case                   later   docket_case        what the docket found, its evidence, controls with seed
@@ -179,7 +179,12 @@ static const char projection_2[]
       "CREATE TABLE shift (id INTEGER PRIMARY KEY, uid BLOB NOT NULL UNIQUE, "
       "person INTEGER NOT NULL REFERENCES person (id), time REAL, clock INTEGER NOT NULL) STRICT;";
 
-const char *const tf_ledger_projections[] = { projection_1, projection_2, NULL };
+static const char projection_3[]
+    = "CREATE TABLE geometry (frame INTEGER NOT NULL REFERENCES frame (id), "
+      "person INTEGER NOT NULL REFERENCES person (id), text TEXT NOT NULL, "
+      "clock INTEGER NOT NULL, PRIMARY KEY (frame, person)) STRICT, WITHOUT ROWID;";
+
+const char *const tf_ledger_projections[] = { projection_1, projection_2, projection_3, NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -286,8 +291,11 @@ static const char *const version_1[] = { LOG_SQL MACHINE_SQL, projection_1, LOCA
 
 static const char *const version_2[] = { COMPLEXITY_SQL, projection_2, version_2_views, NULL };
 
+static const char *const version_3[] = { projection_3, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
+  { 3, version_3 },
   { 0, NULL },
 };

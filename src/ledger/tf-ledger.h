@@ -79,6 +79,13 @@ gint64 tf_ledger_person (TfLedger *ledger, const char *name, GError **error);
 char **tf_ledger_dup_persons (TfLedger *ledger);
 
 /* -- frames ---------------------------------------------------------------------------------- */
+/** TfPersonGeometry: one person's correction of a frame. */
+typedef struct
+{
+  char *person;
+  TfCorrection correction;
+} TfPersonGeometry;
+
 typedef struct
 {
   gint64 id;
@@ -91,6 +98,7 @@ typedef struct
   guint n_hints;      /* not yet judged */
   guint n_marks;      /* live marks on it */
   gboolean done;      /* no hint waits and somebody has judged */
+  GPtrArray *geometries; /* of TfPersonGeometry: who corrected it, the last one first; NULL when nobody did */
   char *refusal;      /* English sentence; NULL when usable */
 } TfFrameRow;
 void tf_frame_row_free (TfFrameRow *row);
@@ -105,6 +113,10 @@ gint64 tf_ledger_find_file (TfLedger *ledger, const char *path);
 /** tf_ledger_frames: (element-type TfFrameRow) in time order, unknown times last. */
 GPtrArray *tf_ledger_frames (TfLedger *ledger, GError **error);
 TfFrameRow *tf_ledger_frame (TfLedger *ledger, gint64 id, GError **error);
+/** tf_frame_row_get_correction: what that person (NULL: nobody) corrected on the frame; none when nothing. */
+TfCorrection tf_frame_row_get_correction (const TfFrameRow *row, const char *person);
+/** tf_ledger_set_geometry: a person's correction of the frame; none takes it back to the header. */
+gboolean tf_ledger_set_geometry (TfLedger *ledger, gint64 frame, gint64 person, const TfCorrection *correction, GError **error);
 
 /* -- hints and measures (machine rows) -------------------------------------------------------- */
 /** tf_ledger_add_hints: all hints of one frame by one rule, with their measures; a second time changes nothing. An empty array records that

@@ -75,6 +75,16 @@ caution_pixels (TfMeasure *m, const TfRegionSamples *samples)
     tf_notes_add (m->cautions, "outline-cut", "d", 100.0 * tf_mask_get_cut (samples->mask));
 }
 
+/* What the region's place rests on. */
+static void
+caution_frame (TfMeasure *m, const TfRegionSamples *samples)
+{
+  const TfNote *by_hand
+      = tf_notes_find (tf_frame_get_cautions (samples->frame), "geometry-by-hand");
+  if (by_hand != NULL)
+    tf_notes_add_copy (m->cautions, by_hand);
+}
+
 /* The floor as observed at the region's mean mu against the noise there. */
 static void
 caution_floor (TfMeasure *m, const TfRegionSamples *samples)
@@ -94,4 +104,5 @@ tf_region_cautions (TfMeasure *measure, const TfRegionSamples *samples, const Tf
   caution_shape (measure);
   caution_pixels (measure, samples);
   caution_floor (measure, samples);
+  caution_frame (measure, samples);
 }

@@ -3,6 +3,7 @@
  */
 #include <math.h>
 #include <stddef.h>
+#include <string.h>
 
 #include <glib/gi18n-lib.h>
 
@@ -89,13 +90,41 @@ tf_floor_kind_name (TfFloorKind kind)
   return floor_names[CLAMP (kind, 0, 1)];
 }
 
+static const char geometry_word[] = " geometry=";
+
+char *
+tf_measure_dup_method (const TfMeasureParams *params, const TfCorrection *correction)
+{
+  g_return_val_if_fail (params != NULL, NULL);
+  char *text = tf_options_dup_canonical (tf_measure_options, params, TF_MEASURE_METHOD);
+  if (!tf_correction_is_set (correction))
+    return text;
+  g_autofree char *plain = text, *by_hand = tf_correction_dup_text (correction);
+  return g_strconcat (plain, geometry_word, by_hand, NULL);
+}
+
+gboolean
+tf_measure_read_method (const char *method, TfMeasureParams *params, TfCorrection *correction)
+{
+  g_return_val_if_fail (method != NULL && params != NULL && correction != NULL, FALSE);
+  g_autofree char *plain = g_strdup (method);
+  char *word = strstr (plain, geometry_word);
+  *correction = tf_correction_none ();
+  if (word != NULL && !tf_correction_from_text (correction, word + strlen (geometry_word)))
+    return FALSE;
+  if (word != NULL)
+    *word = '\0';
+  return tf_options_read_canonical (tf_measure_options, params, TF_MEASURE_METHOD, plain);
+}
+
 char *
 tf_measure_dup_even_method (const char *method, double floor_gauss, TfMeasureParams *params)
 {
+  TfCorrection correction;
   g_return_val_if_fail (method != NULL && params != NULL, NULL);
-  if (!tf_options_read_canonical (tf_measure_options, params, TF_MEASURE_METHOD, method))
+  if (!tf_measure_read_method (method, params, &correction))
     return NULL;
   params->floor_kind = TF_FLOOR_EVEN;
   params->floor_gauss = floor_gauss;
-  return tf_options_dup_canonical (tf_measure_options, params, TF_MEASURE_METHOD);
+  return tf_measure_dup_method (params, &correction);
 }

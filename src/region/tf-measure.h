@@ -14,6 +14,7 @@
 #include <glib.h>
 #include <json-glib/json-glib.h>
 
+#include "tf-correction.h"
 #include "tf-frame.h"
 #include "tf-mask.h"
 #include "tf-option.h"
@@ -118,8 +119,12 @@ typedef struct
 } TfMeasure;
 
 void tf_measure_params_init (TfMeasureParams *params);
+/** tf_measure_dup_method: the canonical text of @params, which keys the method in the ledger; with the person's @correction (nullable) of the
+ * frame's geometry, if any: " geometry=x,y,radius,north" at its end. tf_measure_read_method: the inverse; FALSE when it is not of this version. */
+char *tf_measure_dup_method (const TfMeasureParams *params, const TfCorrection *correction);
+gboolean tf_measure_read_method (const char *method, TfMeasureParams *params, TfCorrection *correction);
 /** tf_measure_dup_even_method: the canonical text of @method with the even floor @floor_gauss instead of its own; NULL when @method is not of
- * this version. @params: (out): what it stands for. */
+ * this version. @params: (out): what it stands for. A correction of the geometry stays in it. */
 char *tf_measure_dup_even_method (const char *method, double floor_gauss, TfMeasureParams *params);
 /** tf_measure_clear: frees what it owns and zeroes. */
 void tf_measure_clear (TfMeasure *measure);

@@ -8,6 +8,7 @@
 
 #include "tf-check.h"
 #include "tf-constants.h"
+#include "tf-correction.h"
 #include "tf-frame-write.h"
 
 enum
@@ -307,6 +308,90 @@ test_correction (void)
   g_assert_cmpfloat (tf_frame_noise_at (other, 0.5), >, 0);
 }
 
+static gboolean
+has (const TfFrame *frame, const char *code)
+{
+  return tf_notes_find (tf_frame_get_cautions (frame), code) != NULL;
+}
+
+/* A header that puts the disk 6 pixels off lies; the person's numbers put it right, and the frame
+ * says whose they are. */
+static void
+test_person_correction (void)
+{
+  TfFrameInfo *info = disk_info (SIDE, 240, 20);
+  g_autofree float *pixels = noisy_disk (&info->geometry, 6, FALSE);
+  TfCorrection truth = tf_correction_of (&info->geometry), off = truth;
+  off.centre_x += 6;
+  off.radius_px *= 1.01;
+  off.north_angle_deg = -100;
+  g_autoptr (TfFrame) good = tf_frame_new (info, pixels, NULL);
+  g_autoptr (TfFrame) bad = tf_frame_corrected (good, &off, NULL);
+  g_assert_true (has (bad, "header-lies") && has (bad, "geometry-by-hand"));
+  g_autoptr (TfFrame) right = tf_frame_corrected (bad, &truth, NULL);
+  g_assert_false (has (right, "header-lies") || has (right, "limb-off"));
+  TfCorrection now = tf_correction_of (tf_frame_get_geometry (right));
+  tf_check_near ("centre x", now.centre_x, truth.centre_x, 1e-9);
+  tf_check_near ("centre y", now.centre_y, truth.centre_y, 1e-9);
+  tf_check_near ("radius", now.radius_px, truth.radius_px, 1e-9);
+  tf_check_near ("north", now.north_angle_deg, 20, 1e-9);
+  TfPlace a, b;
+  g_assert_true (tf_geometry_pixel_to_sun (tf_frame_get_geometry (good), 300, 200, &a));
+  g_assert_true (tf_geometry_pixel_to_sun (tf_frame_get_geometry (right), 300, 200, &b));
+  tf_check_near ("longitude", b.carrington_lon_deg, a.carrington_lon_deg, 1e-9);
+  tf_check_near ("latitude", b.lat_deg, a.lat_deg, 1e-9);
+  TfCorrection none = tf_correction_none ();
+  g_autoptr (TfFrame) itself = tf_frame_corrected (good, &none, NULL);
+  g_assert_true (itself == good);
+}
+
+static void
+test_correction_text (void)
+{
+  TfCorrection c = { 2048.123456, -12.5, 1888.75, -179.9 }, back;
+  g_autofree char *text = tf_correction_dup_text (&c);
+  g_assert_true (tf_correction_from_text (&back, text));
+  g_assert_true (tf_correction_equal (&c, &back));
+  static const char *const bad[]
+      = { "", "1,2,3", "1,2,300,4,5", "1,2,nan,4", "1,2,-300,4", "x,2,300,4", "1,2,300,1e9" };
+  for (guint k = 0; k < G_N_ELEMENTS (bad); k++)
+    {
+      g_assert_false (tf_correction_from_text (&back, bad[k]));
+      g_assert_false (tf_correction_is_set (&back));
+    }
+}
+
+/* Round the same pixels under another geometry; over the limb there is none. */
+static void
+test_outline_between (void)
+{
+  g_autoptr (TfFrameInfo) info = disk_info (SIDE, 240, 0);
+  TfCorrection c = tf_correction_of (&info->geometry);
+  TfGeometry other;
+  c.centre_x -= 3;
+  c.north_angle_deg = 33;
+  g_assert_true (tf_correction_apply (&c, &info->geometry, &other));
+  double lon = tf_geometry_central_carrington (&info->geometry), x[2], y[2];
+  g_autoptr (TfOutline) cap = tf_outline_new_cap (info->time, lon + 20, 15, 5, 12),
+                        edge = tf_outline_new_cap (info->time, lon + 88, 0, 1, 12);
+  g_autoptr (TfOutline) moved = tf_outline_between (cap, &info->geometry, &other);
+  g_assert_nonnull (moved);
+  guint n, m;
+  const TfVertex *from = tf_outline_get_ring (cap, 0, FALSE, &n),
+                 *to = tf_outline_get_ring (moved, 0, FALSE, &m);
+  g_assert_cmpuint (n, ==, m);
+  for (guint k = 0; k < n; k++)
+    {
+      tf_geometry_sun_to_pixel (&info->geometry, from[k].lon_deg, from[k].lat_deg, &x[0], &y[0],
+                                NULL);
+      tf_geometry_sun_to_pixel (&other, to[k].lon_deg, to[k].lat_deg, &x[1], &y[1], NULL);
+      tf_check_near ("pixel x", x[1], x[0], 1e-6);
+      tf_check_near ("pixel y", y[1], y[0], 1e-6);
+    }
+  g_autoptr (TfOutline) lost = tf_outline_between (edge, &info->geometry, &other);
+  g_assert_null (lost);
+}
+
 void
 add_pixel_tests (void)
 {
@@ -321,4 +406,7 @@ add_pixel_tests (void)
   g_test_add_func ("/frame/open/many-threads-at-once", test_many_threads);
   g_test_add_func ("/frame/open/is-cancelled", test_cancel);
   g_test_add_func ("/frame/open/a-corrected-geometry", test_correction);
+  g_test_add_func ("/frame/correction/puts-right-a-header-that-lies", test_person_correction);
+  g_test_add_func ("/frame/correction/as-text-and-back", test_correction_text);
+  g_test_add_func ("/frame/correction/outlines-go-with-the-pixels", test_outline_between);
 }

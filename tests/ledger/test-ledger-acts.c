@@ -363,6 +363,34 @@ test_draft (Fixture *f, gconstpointer data)
   g_assert_null (tf_ledger_dup_draft (f->ledger, frame, person));
 }
 
+/* The disk as a person puts it: kept, replaced, undone, taken back to the header; nobody else's. */
+static void
+test_geometry (Fixture *f, gconstpointer data)
+{
+  g_autoptr (GError) error = NULL;
+  gint64 person = north (f), frame = fixture_frame (f->ledger, 0);
+  TfCorrection one = { 511.5, 512.25, 480.125, -12.5 }, two = { 510, 512, 481, 0 },
+               none = tf_correction_none ();
+  const TfCorrection *steps[] = { &one, &two, &none };
+  for (guint k = 0; k < G_N_ELEMENTS (steps); k++)
+    {
+      g_assert_true (tf_ledger_set_geometry (f->ledger, frame, person, steps[k], &error));
+      g_autoptr (TfFrameRow) row = tf_ledger_frame (f->ledger, frame, &error);
+      TfCorrection now = tf_frame_row_get_correction (row, "north");
+      g_assert_true (tf_correction_equal (&now, steps[k]));
+      TfCorrection other = tf_frame_row_get_correction (row, "south");
+      g_assert_false (tf_correction_is_set (&other));
+      fixture_check (f->ledger, "");
+    }
+  g_autofree char *what = NULL;
+  g_assert_true (tf_ledger_undo (f->ledger, person, &what, &error));
+  g_assert_cmpstr (what, ==, "geometry");
+  g_autoptr (TfFrameRow) row = tf_ledger_frame (f->ledger, frame, &error);
+  TfCorrection now = tf_frame_row_get_correction (row, "north");
+  g_assert_true (tf_correction_equal (&now, &two));
+  fixture_check (f->ledger, "");
+}
+
 void
 add_acts_tests (void)
 {
@@ -377,6 +405,7 @@ add_acts_tests (void)
                 test_notes_and_classes);
   FIXTURE_TEST ("/ledger/acts/all-deeds-are-undone-and-done-again", test_undo_all_redo_all);
   FIXTURE_TEST ("/ledger/acts/a-new-deed-ends-what-could-be-redone", test_new_deed_ends_redo);
+  FIXTURE_TEST ("/ledger/acts/a-geometry-is-one-persons-own", test_geometry);
   FIXTURE_TEST ("/ledger/acts/undo-is-one-persons-own", test_undo_is_one_persons);
   FIXTURE_TEST ("/ledger/acts/the-journal-says-who-did-what-and-when", test_journal);
   FIXTURE_TEST ("/ledger/acts/a-draft-lives-until-it-is-taken-away", test_draft);

@@ -38,6 +38,8 @@ set_up_full (Fixture *f, gconstpointer data)
   g_assert_true (tf_ledger_resolve (f->ledger, fixture_region (f->ledger, one), other, person, TRUE,
                                     &error));
   g_assert_true (tf_ledger_hand_over (f->ledger, person, TF_TIME_UNKNOWN, &error));
+  TfCorrection correction = { 511, 512, 480, 3 };
+  g_assert_true (tf_ledger_set_geometry (f->ledger, 1, other, &correction, &error));
   fixture_keep (f->ledger, 2, other, 0, 0, 13);
   g_assert_true (tf_ledger_undo (f->ledger, other, NULL, &error));
   g_assert_no_error (error);
@@ -84,6 +86,8 @@ static const Tampering tamperings[] = {
   { "a-note-gone", "DELETE FROM note", "check-projection" },
   { "a-note-settled-by-another", "UPDATE resolved SET person = 2", "check-projection" },
   { "a-shift-gone", "DELETE FROM shift", "check-projection" },
+  { "a-geometry", "UPDATE geometry SET text = replace (text, '480', '481')", "check-projection" },
+  { "a-geometry-more", "INSERT INTO geometry VALUES (2, 1, '1,2,30,4', 9)", "check-projection" },
   { "a-drop-more", "INSERT INTO dropped VALUES (4, 1)", "check-projection" },
   { "an-undone-deed", "UPDATE deed SET undone = 0", "check-projection" },
   { "a-region-number", "UPDATE region SET number = 'T2013-0007' WHERE id = 1", "check-projection" },

@@ -53,9 +53,9 @@ test_create (Fixture *f, gconstpointer data)
   fixture_check (ledger, "");
   g_autofree char *modes = fixture_sql_text (
       other, "SELECT (SELECT journal_mode FROM pragma_journal_mode) || ' ' || (SELECT"
-             " application_id FROM pragma_application_id) || ' ' || (SELECT user_version"
+             " application_id FROM pragma_application_id) || ' ' || (SELECT user_version > 0"
              " FROM pragma_user_version)");
-  g_assert_cmpstr (modes, ==, "wal 1413901412 2");
+  g_assert_cmpstr (modes, ==, "wal 1413901412 1");
   g_autofree char *loose = fixture_sql_text (
       other, "SELECT count (*) FROM pragma_table_list WHERE schema = 'main' AND type ="
              " 'table' AND strict = 0 AND name NOT LIKE 'sqlite%'");
@@ -120,7 +120,9 @@ test_migration (Fixture *f, gconstpointer data)
   keep_one (f, ledger, 1);
   fixture_check (ledger, "check-schema"); /* a table of nobody's */
   g_autofree char *now = fixture_sql_text (path, kept), *then = fixture_sql_text (backup, kept);
-  g_assert_cmpstr (now, ==, "42 2");
+  g_autofree char *newest
+      = fixture_sql_text (f->path, "SELECT '42 ' || user_version FROM pragma_user_version");
+  g_assert_cmpstr (now, ==, newest);
   g_assert_cmpstr (then, ==, "42 0");
   g_clear_pointer (&ledger, tf_ledger_close);
   ledger = fixture_open (f, path, &error);
@@ -134,7 +136,7 @@ test_newer (Fixture *f, gconstpointer data)
   gint64 person = tf_ledger_person (f->ledger, "north", NULL), frame = fixture_frame (f->ledger, 0);
   fixture_keep (f->ledger, frame, person, 0, 0, 1);
   g_clear_pointer (&f->ledger, tf_ledger_close);
-  fixture_sql (f->path, "PRAGMA user_version = 7");
+  fixture_sql (f->path, "PRAGMA user_version = 7000");
   fixture_reopen (f);
   g_assert_cmpstr (tf_note_get_code (tf_ledger_get_read_only (f->ledger)), ==,
                    "ledger-newer-version");

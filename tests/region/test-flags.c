@@ -397,6 +397,29 @@ test_map (void)
   g_assert_false (has (&m, "near-limb"));
 }
 
+/* A correction of the frame's geometry is part of what a measure was made by. */
+static void
+test_method_with_geometry (void)
+{
+  TfMeasureParams params, back;
+  TfCorrection none = tf_correction_none (), c = { 512.5, 511.25, 480, -12.5 }, read;
+  tf_measure_params_init (&params);
+  params.floor_gauss = 60;
+  g_autofree char *plain = tf_measure_dup_method (&params, &none),
+                  *by_hand = tf_measure_dup_method (&params, &c);
+  g_assert_cmpstr (plain, !=, by_hand);
+  g_assert_true (tf_measure_read_method (plain, &back, &read));
+  g_assert_false (tf_correction_is_set (&read));
+  g_assert_true (tf_measure_read_method (by_hand, &back, &read));
+  g_assert_true (tf_correction_equal (&read, &c));
+  tf_check_near ("floor", back.floor_gauss, 60, 0);
+  g_autofree char *even = tf_measure_dup_even_method (by_hand, 80, &back);
+  g_assert_true (tf_measure_read_method (even, &back, &read));
+  g_assert_true (tf_correction_equal (&read, &c));
+  tf_check_near ("even floor", back.floor_gauss, 80, 0);
+  g_assert_false (tf_measure_read_method ("flux-centroid/1 geometry=1,2", &back, &read));
+}
+
 void
 add_flag_tests (void)
 {
@@ -414,4 +437,5 @@ add_flag_tests (void)
   g_test_add_func ("/region/dipole/two-poles-give-the-closed-form", test_dipole);
   g_test_add_func ("/region/noise/realisations-agree-with-the-formula", test_realisations);
   g_test_add_func ("/region/map/a-region-across-longitude-zero-is-whole", test_map);
+  g_test_add_func ("/region/method/with-a-geometry-corrected-by-hand", test_method_with_geometry);
 }
