@@ -83,5 +83,6 @@ main (int argc, char **argv)
   add_dial_tests ();
   add_wings_tests ();
   add_overlay_tests ();
+  add_laws_chart_tests ();
   return g_test_run ();
 }

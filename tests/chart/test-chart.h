@@ -34,3 +34,4 @@ void add_symbol_tests (void);
 void add_dial_tests (void);
 void add_wings_tests (void);
 void add_overlay_tests (void);
+void add_laws_chart_tests (void);

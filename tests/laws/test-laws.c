@@ -64,6 +64,7 @@ int
 main (int argc, char **argv)
 {
   g_test_init (&argc, &argv, NULL);
+  test_laws_add_bin ();
   test_laws_add_cycle ();
   test_laws_add_verdict ();
   test_laws_add_proportion ();

@@ -7,6 +7,7 @@
 #include "tf-sample.h"
 #include "tf-verdict.h"
 
+void test_laws_add_bin (void);
 void test_laws_add_cycle (void);
 void test_laws_add_emergence (void);
 void test_laws_add_hale (void);

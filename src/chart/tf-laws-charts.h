@@ -1,0 +1,63 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* TfLawsCharts: what the charts of one study show, and the charts themselves as a table. Made once
+ * from a study's findings (slow at a million rows: off the main thread), then immutable; any thread
+ * may draw it. It owns all it needs.
+ *
+ * A chart is draw (cr, charts, style, area), the same for the window, PNG, SVG and PDF; hit-testing
+ * and the words for a screen reader stand beside it. Sizes follow style->text_pt. Every share, median
+ * and slope has its interval. Nothing rests on colour alone: printed in grey the charts say the same.
+ */
+
+#include "tf-chart.h"
+#include "tf-hale.h"
+#include "tf-joy.h"
+
+G_BEGIN_DECLS
+
+/** TfLawsFacts: what is known of a study; borrowed while the charts are made. */
+typedef struct
+{
+  const TfSample *sample;
+  const TfVerdict *verdicts; /* one a row */
+  const GArray *hale;        /* TfHaleRow */
+  const GArray *joy;         /* TfJoyFit; that of all cycles and both hemispheres is drawn */
+  TfHaleParams hale_params;
+  TfJoyParams joy_params;
+  gboolean all_relations;    /* every published relation; else the first magnetic and the first of
+                                white light */
+} TfLawsFacts;
+
+typedef struct _TfLawsCharts TfLawsCharts; /* immutable, reference counted */
+
+TfLawsCharts *tf_laws_charts_new (const TfLawsFacts *facts);
+TfLawsCharts *tf_laws_charts_ref (TfLawsCharts *charts);
+void tf_laws_charts_unref (TfLawsCharts *charts);
+
+typedef struct
+{
+  const char *name;  /* of the file: "hale", "joy" ... */
+  const char *title; /* msgid */
+  /** draw: @charts may lack what the chart is about: then it says so. */
+  void (*draw) (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style, TfArea area);
+  /** hit: the row of the sample at a place, or -1. Where several stand behind one sign (a bar), the
+   * next after @after, round the end; -1 begins. */
+  int (*hit) (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
+              double y, int after);
+  /** dup_description: (transfer full): what it shows now, in words. */
+  char *(*dup_description) (const TfLawsCharts *charts);
+  /** height: units that suit a width. */
+  double (*height) (const TfLawsCharts *charts, const TfChartStyle *style, double width);
+  /** has: whether there is anything to show. */
+  gboolean (*has) (const TfLawsCharts *charts);
+} TfLawsChart;
+
+/** tf_laws_chart_table: ends with name NULL. */
+extern const TfLawsChart tf_laws_chart_table[];
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLawsCharts, tf_laws_charts_unref)
+
+G_END_DECLS
