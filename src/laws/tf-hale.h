@@ -44,8 +44,8 @@ typedef struct
  * Returns: (element-type TfHaleRow) (transfer full): by cycle, then N, S, both; last over all,
  * cycle 0.
  */
-GArray *tf_hale_table (const TfSample *sample, const TfVerdict *verdicts,
-                       const TfHaleParams *params);
+GArray *
+tf_hale_table (const TfSample *sample, const TfVerdict *verdicts, const TfHaleParams *params);
 /**
  * tf_hale_expected_false: chance that position errors alone turn an axis over, so that a keeping
  * region reads as breaking.

@@ -59,6 +59,81 @@ tf_clopper_pearson (guint x, guint n, double level)
                        x == n ? 1.0 : beta_quantile (1.0 - tail, x + 1.0, (double)n - x) };
 }
 
+typedef struct
+{
+  double row, column, n; /* x of the table's n are in the first row and the first column */
+} Margins;
+
+/* The hypergeometric weight of x + @step from that of x: whole tables by ratios, so that nothing
+ * overflows however large they are. */
+static double
+next_weight (const Margins *m, double x, double weight, int step)
+{
+  if (step > 0)
+    return weight * (m->row - x) * (m->column - x)
+           / ((x + 1.0) * (m->n - m->row - m->column + x + 1.0));
+  return weight * x * (m->n - m->row - m->column + x)
+         / ((m->row - x + 1.0) * (m->column - x + 1.0));
+}
+
+/* The weight of @wanted relative to that of @mode. */
+static double
+weight_from (const Margins *m, double mode, double wanted)
+{
+  double weight = 1.0;
+  int step = wanted > mode ? 1 : -1;
+  for (double x = mode; fabs (x - wanted) > 0.5; x += step)
+    weight = next_weight (m, x, weight, step);
+  return weight;
+}
+
+double
+tf_fisher_exact (guint a, guint b, guint c, guint d)
+{
+  const Margins m = { (double)a + b, (double)a + c, (double)a + b + c + d };
+  double low = fmax (0.0, m.row + m.column - m.n), high = fmin (m.row, m.column);
+  double mode = fmin (high, fmax (low, floor ((m.row + 1.0) * (m.column + 1.0) / (m.n + 2.0))));
+  double limit = weight_from (&m, mode, a) * (1.0 + 1e-7), all = 1.0, unlikely = 1.0 <= limit;
+  for (int step = -1; step <= 1; step += 2)
+    {
+      double weight = 1.0;
+      for (double x = mode; step > 0 ? x < high - 0.5 : x > low + 0.5; x += step)
+        {
+          weight = next_weight (&m, x, weight, step);
+          if (!(weight > 0.0))
+            break;
+          all += weight;
+          unlikely += weight <= limit ? weight : 0.0;
+        }
+    }
+  return fmin (1.0, unlikely / all);
+}
+
+guint
+tf_holm (const double *p, guint n, double *adjusted)
+{
+  g_autofree double *given = g_memdup2 (p, n * sizeof *p);
+  g_autofree gboolean *done = g_new0 (gboolean, n + 1);
+  guint m = 0;
+  double greatest = 0.0;
+  for (guint k = 0; k < n; k++)
+    {
+      m += !isnan (given[k]);
+      adjusted[k] = NAN;
+    }
+  for (guint left = m; left > 0; left--)
+    {
+      guint least = n;
+      for (guint k = 0; k < n; k++)
+        if (!done[k] && !isnan (given[k]) && (least == n || given[k] < given[least]))
+          least = k;
+      greatest = fmax (greatest, fmin (1.0, left * given[least]));
+      adjusted[least] = greatest;
+      done[least] = TRUE;
+    }
+  return m;
+}
+
 double
 tf_quantile (const double *sorted, guint n, double p)
 {

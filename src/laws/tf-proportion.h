@@ -24,6 +24,13 @@ TfInterval tf_wilson (guint x, guint n, double level);
 /** tf_clopper_pearson: exact, by the beta quantiles (x, n-x+1) and (x+1, n-x) (Clopper & Pearson
  * 1934); NaN as above. */
 TfInterval tf_clopper_pearson (guint x, guint n, double level);
+/** tf_fisher_exact: two-sided chance of a 2 x 2 table with rows (@a, @b) and (@c, @d) under equal
+ * shares: the sum over all tables of the same margins that are no likelier (Fisher 1935; the rule of
+ * Irwin 1935, as R has it). 1 when a margin is 0. */
+double tf_fisher_exact (guint a, guint b, guint c, guint d);
+/** tf_holm: chances adjusted for the number of comparisons (Holm 1979, Scand. J. Statist. 6, 65); NaN
+ * ones stay NaN and do not count. Returns how many count. @adjusted may be @p. */
+guint tf_holm (const double *p, guint n, double *adjusted);
 /** tf_quantile: of @n sorted values, linear between order statistics (type 7). */
 double tf_quantile (const double *sorted, guint n, double p);
 /** tf_median: of values in any order (copied); NaN for none, and when one is NaN. */

@@ -34,7 +34,7 @@ typedef struct
   TfVerdictKind kind;
   const char *reason; /* note code when CANNOT_SAY, else NULL; see tf_verdict_judge() */
   TfCycleCall cycle;
-  int expected;       /* sign the leader should have, of cycle.number when unsure; 0 unknown */
+  int expected; /* sign the leader should have, of cycle.number when unsure; 0 unknown */
   /* when the cycle alone is unsure: both readings; else CANNOT_SAY */
   TfVerdictKind as_number, as_other;
 } TfVerdict;
@@ -52,8 +52,8 @@ typedef struct
  *
  * A quantity that the source lacks gives no reason by itself, except polarity and latitude.
  */
-TfVerdict tf_verdict_judge (const TfSampleRow *row, const TfDivides *divides,
-                            const TfVerdictParams *params);
+TfVerdict
+tf_verdict_judge (const TfSampleRow *row, const TfDivides *divides, const TfVerdictParams *params);
 /** tf_verdict_weaker_share: the weaker polarity's share of the flux, from the imbalance; NaN when
  * not known. */
 double tf_verdict_weaker_share (const TfSampleRow *row);

@@ -8,10 +8,12 @@
 #include "tf-verdict.h"
 
 void test_laws_add_bin (void);
+void test_laws_add_agreement (void);
 void test_laws_add_cycle (void);
 void test_laws_add_emergence (void);
 void test_laws_add_hale (void);
 void test_laws_add_joy (void);
+void test_laws_add_line (void);
 void test_laws_add_proportion (void);
 void test_laws_add_verdict (void);
 

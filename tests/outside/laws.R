@@ -1,5 +1,7 @@
 # laws.R TABLE: what R makes of the cases, as CSV, for laws.py. Needs nothing but R's own packages.
 #   shares FILE: binom.test (Clopper-Pearson) and prop.test without continuity correction (Wilson)
+#   fisher FILE: fisher.test of each table, and p.adjust of ours by Holm's method
+#   kendall FILE: cor.test of each case's pairs
 #   sunspots:    the months of the extrema of datasets::sunspot.month, 13-month smoothed
 given <- commandArgs(trailingOnly = TRUE)
 
@@ -34,4 +36,26 @@ sunspots <- function(file) {
   }
 }
 
-if (given[1] == "shares") shares(given[2]) else sunspots(given[2])
+fisher <- function(file) {
+  cases <- read.csv(file)
+  cat("p,holm\n")
+  holm <- p.adjust(cases$p, "holm")
+  for (k in seq_len(nrow(cases))) {
+    p <- fisher.test(matrix(c(cases$a[k], cases$c[k], cases$b[k], cases$d[k]), 2), conf.int = FALSE)$p.value
+    cat(sprintf("%.17g,%.17g\n", p, holm[k]))
+  }
+}
+
+kendall <- function(file) {
+  cases <- read.csv(file)
+  cat("tau,p\n")
+  for (c in unique(cases$case)) {
+    part <- cases[cases$case == c, ]
+    tied <- anyDuplicated(part$x) || anyDuplicated(part$y)
+    test <- suppressWarnings(cor.test(part$x, part$y, method = "kendall", exact = !tied, continuity = FALSE))
+    cat(sprintf("%.17g,%.17g\n", test$estimate, test$p.value))
+  }
+}
+
+switch(given[1], shares = shares(given[2]), sunspots = sunspots(given[2]), fisher = fisher(given[2]),
+       kendall = kendall(given[2]))

@@ -1,4 +1,4 @@
-"""laws.py OUTSIDE_LAWS SOURCE: proportions, medians, cycles, Hale's rule and Joy's law against R, scipy, numpy and
+"""laws.py OUTSIDE_LAWS SOURCE: proportions, medians, comparisons, lines, directions, agreement, cycles, Hale's rule and Joy's law against R, scipy, numpy and
 published values. Prints TAP. Debian packages: r-base-core, python3-scipy, python3-numpy.
 """
 import csv
@@ -11,7 +11,7 @@ import tempfile
 import warnings
 
 import numpy as np
-from scipy import stats
+from scipy import special, stats
 
 OURS, TOP = sys.argv[1], sys.argv[2]
 HERE = os.path.dirname(os.path.abspath(__file__))
@@ -108,6 +108,130 @@ def _():
         got.append([float(part[0][name]) for name in ("median", "weighted", "quantile")])
         expected.append([np.median(values), weighted_median(values, weights), np.quantile(values, float(part[0]["p"]))])
     near("median, weighted median, quantile", got, expected, 1e-9)
+
+
+# -- comparisons, pairs, directions, agreement -------------------------------------------------------
+
+def cases(rows):
+    """The rows of each case."""
+    found = {}
+    for row in rows:
+        found.setdefault(row["case"], []).append(row)
+    return list(found.values())
+
+
+def figures(parts, name):
+    """A figure of each case: it stands in every row."""
+    return np.array([float(part[0][name]) for part in parts])
+
+
+@test("Fisher's exact chances and Holm's adjusted ones are R's fisher.test and p.adjust")
+def _():
+    rows = ours("fisher")
+    theirs = list(csv.DictReader(io.StringIO(r("fisher", rows))))
+    near("exact chance", column(rows, "p"), column(theirs, "p"), 1e-9)
+    near("by Holm", column(rows, "holm"), column(theirs, "holm"), 1e-12)
+
+
+@test("Kendall's tau is R's cor.test, exact and with ties; Sen's limits are scipy's theilslopes")
+def _():
+    rows = ours("pairs")
+    parts = cases(rows)
+    theirs = list(csv.DictReader(io.StringIO(r("kendall", rows))))
+    near("tau", figures(parts, "tau"), column(theirs, "tau"), 1e-12)
+    near("its chance", figures(parts, "p"), column(theirs, "p"), 1e-9)
+    for part in parts:
+        if int(part[0]["case"]) % 3 == 0:  # tied: scipy counts the pairs of equal x otherwise
+            continue
+        limits = stats.theilslopes(column(part, "y"), column(part, "x"), 0.9)[2:]
+        assert np.allclose([float(part[0]["sen_low"]), float(part[0]["sen_high"])], limits, atol=1e-9), part[0]
+
+
+@test("York's line is scipy.odr's, the other methods are what their definitions make least")
+def _():
+    from scipy import odr
+    parts = cases(ours("pairs"))
+    got, expected = [], []
+    for part in parts:
+        x, y, wx, wy = (column(part, name) for name in ("x", "y", "wx", "wy"))
+        start = np.polyfit(x, y, 1)
+        fit = odr.ODR(odr.RealData(x, y, 1 / np.sqrt(wx), 1 / np.sqrt(wy)), odr.unilinear, start, sstol=1e-15, partol=1e-15, maxit=2000).run()
+        got.append([float(part[0][name]) for name in ("york", "york_intercept", "york_chi2")])
+        expected.append([*fit.beta, fit.sum_square])
+        near_sd = float(part[0]["york_sd"]) / np.sqrt(fit.cov_beta[0, 0])
+        assert abs(near_sd - 1) < 0.1, near_sd  # two evaluation points of one matrix
+        assert np.allclose([float(part[0]["least-squares"]), float(part[0]["least-squares_intercept"])], start, atol=1e-9)
+        assert abs(float(part[0]["inverse"]) - 1 / np.polyfit(y, x, 1)[0]) < 1e-9
+        values, vectors = np.linalg.eigh(np.cov(x, y))
+        assert abs(float(part[0]["orthogonal"]) - vectors[1, 1] / vectors[0, 1]) < 1e-9
+        assert abs(abs(float(part[0]["reduced-major-axis"])) - y.std() / x.std()) < 1e-9
+    got, expected = np.array(got), np.array(expected)  # scipy stops when the sum of squares is flat
+    for k, (name, tolerance) in enumerate((("slope", 1e-5), ("intercept", 2e-4), ("sum of squares", 1e-6))):
+        near(f"York's {name}", got[:, k], expected[:, k], tolerance)
+
+
+@test("means, deviations and concentrations of angles are scipy's; axes by doubling; correlation by every pair")
+def _():
+    for part in cases(ours("angles")):
+        factor = 2 if int(part[0]["axes"]) else 1
+        a, b = np.radians(column(part, "first")) * factor, np.radians(column(part, "second")) * factor
+        f = {name: float(part[0][name]) for name in ("mean", "resultant", "sd", "concentration", "correlation")}
+        turn = np.angle(np.exp(1j * (np.radians(f["mean"]) * factor - stats.circmean(a))))
+        assert abs(turn) < 1e-9 and abs(np.radians(f["sd"]) * factor - stats.circstd(a)) < 1e-9, f
+        assert abs(f["resultant"] - (1 - stats.circvar(a))) < 1e-12, f
+        ratio = special.ive(1, f["concentration"]) / special.ive(0, f["concentration"])
+        assert abs(ratio - f["resultant"]) < 1e-9, f
+        i, j = np.triu_indices(len(a), 1)
+        top = (np.sin(a[i] - a[j]) * np.sin(b[i] - b[j])).sum()
+        under = (np.sin(a[i] - a[j]) ** 2).sum() * (np.sin(b[i] - b[j]) ** 2).sum()
+        assert abs(f["correlation"] - top / np.sqrt(under)) < 1e-9, f
+
+
+@test("Rayleigh's chance is what random directions give, within sampling error")
+def _():
+    rng = np.random.default_rng(8)
+    for n, length in ((9, 6.3989), (30, 9.0)):
+        seen = np.abs(np.exp(2j * np.pi * rng.random((200000, n))).sum(1)) >= length
+        formula = np.exp(np.sqrt(1 + 4 * n + 4 * (n * n - length ** 2)) - (1 + 2 * n))
+        assert abs(seen.mean() - formula) < 4 * np.sqrt(formula / 200000) + 0.02 * formula, (seen.mean(), formula)
+    for part in cases(ours("angles")):
+        n, length = len(part), len(part) * float(part[0]["resultant"])
+        formula = np.exp(np.sqrt(1 + 4 * n + 4 * (n * n - length ** 2)) - (1 + 2 * n))
+        assert abs(formula - float(part[0]["rayleigh"])) <= 1e-9 * formula + 1e-300, part[0]
+
+
+@test("kappas and alphas are those of their definitions: pairs of answers, met and expected, in numpy")
+def _():
+    def alpha(values, metric):
+        seen, every = [], []
+        for unit in values.T:
+            unit = unit[~np.isnan(unit)]
+            if len(unit) > 1:
+                seen += [(v, w, 1 / (len(unit) - 1)) for i, v in enumerate(unit) for j, w in enumerate(unit) if i != j]
+                every += list(unit)
+        every = np.array(every)
+        got = sum(metric(v, w, every) * weight for v, w, weight in seen) / len(every)
+        chance = sum(metric(v, w, every) for v in every for w in every) / (len(every) * (len(every) - 1))
+        return 1 - got / chance
+
+    def ordinal(v, w, every):
+        low, high = min(v, w), max(v, w)
+        return 0 if v == w else (((every >= low) & (every <= high)).sum() - ((every == v).sum() + (every == w).sum()) / 2) ** 2
+
+    metrics = {"nominal": lambda v, w, e: float(v != w), "ordinal": ordinal, "interval": lambda v, w, e: (v - w) ** 2,
+               "ratio": lambda v, w, e: ((v - w) / (v + w)) ** 2}
+    for part in cases(ours("opinions"))[::4]:
+        a, b, c, d = (column(part, name) for name in "abcd")
+        f = {name: float(part[0][name]) for name in ("cohen", "fleiss", "nominal", "ordinal", "interval", "ratio")}
+        po, pe = (a == b).mean(), sum((a == k).mean() * (b == k).mean() for k in range(3))
+        assert abs(f["cohen"] - (po - pe) / (1 - pe)) < 1e-12, f
+        three = np.array([a, b, c])
+        pairs = np.mean([(three[i] == three[j]).mean() for i in range(3) for j in range(i)])
+        chance = sum((three == k).mean() ** 2 for k in range(3))
+        assert abs(f["fleiss"] - (pairs - chance) / (1 - chance)) < 1e-12, f
+        values = np.array([a + 1, b + 1, c + 1, d])
+        for name, metric in metrics.items():
+            assert abs(f[name] - alpha(values, metric)) < 1e-9, (name, f)
 
 
 # -- cycles --------------------------------------------------------------------------------------

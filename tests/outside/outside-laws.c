@@ -7,6 +7,8 @@
  * input.
  */
 
+#include "outside-laws.h"
+
 #include <glib.h>
 #include <math.h>
 #include <stdio.h>
@@ -178,11 +180,11 @@ main (int argc, char **argv)
   {
     const char *name;
     void (*print) (void);
-  } tables[] = { { "shares", print_shares },
-                 { "medians", print_medians },
-                 { "cycles", print_cycles },
-                 { "calls", print_calls },
-                 { "joy", print_fits } };
+  } tables[] = { { "shares", print_shares },    { "medians", print_medians },
+                 { "cycles", print_cycles },    { "calls", print_calls },
+                 { "joy", print_fits },         { "fisher", print_fisher },
+                 { "pairs", print_pairs },      { "angles", print_angles },
+                 { "opinions", print_opinions } };
   for (guint k = 0; k < G_N_ELEMENTS (tables); k++)
     if (argc == 2 && strcmp (argv[1], tables[k].name) == 0)
       {
