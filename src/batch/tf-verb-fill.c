@@ -86,6 +86,23 @@ any_is_there (char *const *given, GError **error)
   return FALSE;
 }
 
+/* What an older ledger or a stopped window left without figures. */
+static gboolean
+fill_complexity (TfLedger *ledger, const TfIntakeParams *params, const TfWork *work, GError **error)
+{
+  const TfRowQuery query = { .marks = TRUE, .hints = TRUE };
+  guint n = 0;
+  if (!tf_intake_complexity (ledger, &query, &params->complexity, work, &n, error))
+    return FALSE;
+  if (n == 0)
+    return TRUE;
+  g_autofree char *line
+      = g_strdup_printf (ngettext ("complexity worked out for %u outline that had none",
+                                   "complexity worked out for %u outlines that had none", n), n);
+  tf_batch_say (line);
+  return TRUE;
+}
+
 static int
 fill (const char *path, char *const *given, const TfIntakeParams *params, gboolean json)
 {
@@ -116,6 +133,8 @@ fill (const char *path, char *const *given, const TfIntakeParams *params, gboole
                          tally.count[TF_INTAKE_ADDED], tally.hints, tally.count[TF_INTAKE_THERE],
                          tally.count[TF_INTAKE_REFUSED], tally.count[TF_INTAKE_FAILED]);
   tf_batch_say (sum);
+  if (done && !params->no_hints)
+    done = fill_complexity (ledger, params, work, &error);
   if (done)
     return outcome_exit (&tally);
   tf_batch_say_error (error);
@@ -143,6 +162,8 @@ tf_verb_fill (int argc, char **argv)
   tf_batch_add_frame_words (context, &frame);
   g_option_context_add_group (context, tf_options_new_group (tf_hint_options, &params.hint, "rule", N_ ("the rule")));
   g_option_context_add_group (context, tf_options_new_group (tf_measure_options, &params.measure, "method", N_ ("the method")));
+  g_option_context_add_group (context, tf_options_new_group (tf_complexity_options, &params.complexity, "complexity",
+                                                             N_ ("inversion lines and complexity")));
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
   if (argc < 3)

@@ -18,19 +18,24 @@ typedef struct
   TfMeasureParams measure;
   TfStudy *study;
   char *method;
+  gboolean complexity; /* asked for: it takes longer than all the rest */
+  TfComplexityParams complexity_params;
 } Words;
 
 static void
 build_hint (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfHint *hint, const Words *words)
 {
-  const TfFigures none = { NULL };
+  g_auto (TfComplexity) complexity = { 0 };
+  if (words->complexity)
+    tf_complexity_region (&complexity, frame, hint->outline, &words->measure, &words->complexity_params);
+  const TfFigures figures = { words->complexity ? &complexity : NULL, &words->complexity_params, NULL, NULL };
   json_builder_begin_object (builder);
   tf_json_string (builder, "kind", hint->unipolar ? "unipolar" : "bipole");
   tf_json_string (builder, "size", hint->measure.ephemeral ? "ephemeral" : "region");
   json_builder_set_member_name (builder, "outline");
   tf_outline_build_json (hint->outline, builder);
   json_builder_set_member_name (builder, "measure");
-  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study, &none);
+  tf_batch_build_measure (builder, path, frame, &hint->measure, words->method, words->study, &figures);
   json_builder_set_member_name (builder, "cautions");
   tf_notes_build_json (hint->cautions, builder);
   json_builder_end_object (builder);
@@ -82,7 +87,16 @@ print_rule (const TfHintParams *params)
 }
 
 static void
-print_hints (const char *path, const GPtrArray *hints, const Words *words)
+print_complexity (const TfFrame *frame, const TfHint *hint, const Words *words)
+{
+  g_auto (TfComplexity) complexity = { 0 };
+  tf_complexity_region (&complexity, frame, hint->outline, &words->measure, &words->complexity_params);
+  g_autofree char *text = tf_complexity_dup_text (&complexity);
+  tf_batch_print (text);
+}
+
+static void
+print_hints (const char *path, const TfFrame *frame, const GPtrArray *hints, const Words *words)
 {
   print_rule (&words->hint);
   printf (ngettext ("%s: %u hint\n", "%s: %u hints\n", hints->len), path, hints->len);
@@ -91,6 +105,8 @@ print_hints (const char *path, const GPtrArray *hints, const Words *words)
       const TfHint *hint = g_ptr_array_index (hints, k);
       g_autofree char *text = tf_batch_dup_measure_text (&hint->measure, words->study);
       printf ("%u. %s, %s", k + 1, hint->unipolar ? _ ("unipolar") : _ ("bipole"), text);
+      if (words->complexity)
+        print_complexity (frame, hint, words);
       for (guint j = 0; j < tf_notes_get_n (hint->cautions); j++)
         {
           g_autofree char *caution = tf_note_dup_text (tf_notes_get (hint->cautions, j), FALSE);
@@ -113,7 +129,7 @@ hints_one (const char *path, const Words *words, const TfWork *work, JsonBuilder
   if (builder != NULL)
     build_hints (builder, path, frame, hints, words);
   else
-    print_hints (path, hints, words);
+    print_hints (path, frame, hints, words);
   return TRUE;
 }
 
@@ -124,8 +140,11 @@ tf_verb_hints (int argc, char **argv)
   Words words = { 0 };
   const GOptionEntry entries[] = {
     { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
+    { "complexity", 0, 0, G_OPTION_ARG_NONE, &words.complexity,
+      N_ ("inversion lines and complexity of each hint, too (fill always keeps them; here they take longer than all the rest)"), NULL },
     { NULL },
   };
+  tf_complexity_params_init (&words.complexity_params);
   tf_hint_params_init (&words.hint);
   tf_measure_params_init (&words.measure);
   GOptionContext *context = tf_batch_context ("hints");
@@ -133,6 +152,8 @@ tf_verb_hints (int argc, char **argv)
   tf_batch_add_frame_words (context, &words.frame);
   g_option_context_add_group (context, tf_options_new_group (tf_hint_options, &words.hint, "rule", N_ ("the rule")));
   g_option_context_add_group (context, tf_options_new_group (tf_measure_options, &words.measure, "method", N_ ("the method")));
+  g_option_context_add_group (context, tf_options_new_group (tf_complexity_options, &words.complexity_params, "complexity",
+                                                             N_ ("inversion lines and complexity")));
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
   if (argc < 2)

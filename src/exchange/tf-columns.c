@@ -115,6 +115,15 @@ NUMBER (get_class_delta,
         int_or_nan (tf_mount_wilson_delta (r->row->mw_class) >= 0, tf_mount_wilson_delta (r->row->mw_class)))
 NUMBER (get_unipolar, int_or_nan (r->row->is_hint, r->row->unipolar != 0))
 NUMBER (get_simulated, r->row->simulated != 0)
+#define C (r->row->complexity)
+NUMBER (get_schrijver, C.there ? C.r_mx : (double)NAN)
+NUMBER (get_gradient_length, C.there ? C.strong_gradient_length_mm : (double)NAN)
+NUMBER (get_gradient_weighted, C.there ? C.gradient_weighted_gauss : (double)NAN)
+NUMBER (get_flux_near, C.there ? C.flux_near_mx : (double)NAN)
+NUMBER (get_strong_pieces, int_or_nan (C.there, (int)C.pieces))
+NUMBER (get_delta_candidate, int_or_nan (C.there, C.delta_candidate != 0))
+NUMBER (get_complexity_mu, r->row->complexity_method != NULL ? C.mu : (double)NAN)
+TEXT (get_complexity_method, r->row->complexity_method)
 
 /* -- the table -------------------------------------------------------------------------------- */
 
@@ -189,6 +198,18 @@ const TfColumn tf_columns[] = {
   AS_BOOL ("class_delta", "meta.code", "whether the Mount Wilson class has delta", get_class_delta),
   AS_BOOL ("unipolar", "meta.code", "hints: offered as unipolar", get_unipolar),
   AS_BOOL ("simulated", "meta.code", "the frame is simulated", get_simulated),
+  AS_NUMBER ("r_schrijver_mx", MX, "phys.magField;phys.area", "R of Schrijver 2007 where mu is at least 0.7; no forecast",
+             get_schrijver),
+  AS_NUMBER ("strong_gradient_length_mm", MEGAMETRE, "phys.size", "length of inversion line with a strong gradient",
+             get_gradient_length),
+  AS_NUMBER ("gradient_weighted_length_gauss", GAUSS, "phys.magField", "gradient summed along the strong-field inversion line, G",
+             get_gradient_weighted),
+  AS_NUMBER ("flux_near_line_mx", MX, "phys.magField;phys.area", "unsigned flux near strong-gradient inversion line, Mx", get_flux_near),
+  AS_INT ("strong_pieces", "meta.number", "single-polarity pieces of strong field", get_strong_pieces),
+  AS_BOOL ("delta_candidate", "meta.code", "opposite cores close together; delta is a person's to say",
+           get_delta_candidate),
+  AS_NUMBER ("complexity_mu", NONE, "obs.param", "mu at the outline's middle, where complexity was asked for", get_complexity_mu),
+  AS_TEXT ("complexity_method", "meta.note;meta.software", "how complexity was worked out, with every option", get_complexity_method),
   { NULL },
 };
 /* clang-format on */

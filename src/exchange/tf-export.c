@@ -45,7 +45,7 @@ GArray *
 tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPtrArray **rows,
                 GError **error)
 {
-  TfRowQuery query = { .marks = TRUE, .hints = with_hints };
+  TfRowQuery query = { .marks = TRUE, .hints = with_hints, .complexity = TRUE };
   GPtrArray *found = tf_study_rows (ledger, &query, tf_study_even_floor (ledger, NULL), error);
   if (found == NULL)
     return NULL;

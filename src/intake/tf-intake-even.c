@@ -5,7 +5,7 @@
 /* Measures what a ledger holds with one even floor, so that a constant region keeps its flux from limb to limb and a study's rows are
  * alike. The measures are machine rows beside those that people saw; nothing is replaced. Frames are opened once each. */
 
-#include "tf-intake.h"
+#include "tf-intake-private.h"
 
 #include <string.h>
 
@@ -41,9 +41,8 @@ batch_new (void)
   return batch;
 }
 
-/* The frame's file as it was recorded; NULL when it is gone or another. */
-static TfFrame *
-open_frame (TfLedger *ledger, gint64 id, const TfWork *work)
+TfFrame *
+tf_intake_open_frame (TfLedger *ledger, gint64 id, const TfWork *work)
 {
   g_autoptr (TfFrameRow) its = tf_ledger_frame (ledger, id, NULL);
   g_autofree char *checksum = its != NULL ? tf_frame_file_checksum (its->path, work != NULL ? work->cancel : NULL, NULL) : NULL;
@@ -78,7 +77,7 @@ measure_frame (TfLedger *ledger, const GPtrArray *rows, guint first, double floo
       if (method == NULL || tf_ledger_has_measure (ledger, id, row->outline, method, NULL))
         continue;
       if (!tried)
-        frame = open_frame (ledger, id, work);
+        frame = tf_intake_open_frame (ledger, id, work);
       tried = TRUE;
       TfMeasure measure = { 0 };
       g_autoptr (TfFrame) seen = frame != NULL ? as_marked (frame, method, work) : NULL;

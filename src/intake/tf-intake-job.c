@@ -28,6 +28,7 @@ tf_job_free (TfJob *job)
   g_free (job->failure);
   tf_frame_info_free (job->info);
   g_clear_pointer (&job->hints, g_ptr_array_unref);
+  g_clear_pointer (&job->complexity, g_array_unref);
   g_free (job);
 }
 
@@ -62,6 +63,21 @@ take_cautions (TfJob *job, const TfFrame *frame)
     tf_notes_add_copy (job->info->cautions, tf_notes_get (cautions, k));
 }
 
+/* The noise, the hints and the grids of one frame are one thread's work: frames go side by side. */
+static void
+add_complexity (TfJob *job, const TfFrame *frame, const TfIntakeParams *params)
+{
+  job->complexity = g_array_sized_new (FALSE, TRUE, sizeof (TfComplexityRow), job->hints->len);
+  for (guint k = 0; k < job->hints->len; k++)
+    {
+      const TfHint *hint = g_ptr_array_index (job->hints, k);
+      g_auto (TfComplexity) c = { 0 };
+      tf_complexity_region (&c, frame, hint->outline, &params->measure, &params->complexity);
+      TfComplexityRow row = tf_complexity_row (&c);
+      g_array_append_val (job->complexity, row);
+    }
+}
+
 static void
 find (TfJob *job, const TfIntake *intake)
 {
@@ -86,6 +102,8 @@ find (TfJob *job, const TfIntake *intake)
     job->hints = g_ptr_array_new (); /* a map: outlines are drawn by hand */
   else if (job->hints == NULL)
     fail (job, error);
+  if (job->hints != NULL)
+    add_complexity (job, frame, intake->params);
 }
 
 void

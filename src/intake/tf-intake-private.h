@@ -26,6 +26,7 @@ typedef struct
   TfFrameInfo *info;
   double noise_gauss;
   GPtrArray *hints; /* NULL when none were asked for */
+  GArray *complexity; /* TfComplexityRow, one a hint */
   char *failure;    /* sentence; NULL when well */
 } TfJob;
 
@@ -34,8 +35,11 @@ typedef struct
   const TfIntakeParams *params;
   TfPool *pool;
   GAsyncQueue *done; /* TfJob, back from the workers */
-  char *rule, *method;
+  char *rule, *method, *complexity;
 } TfIntake;
+
+/* The frame's file as it was recorded; NULL when it is gone or another. */
+TfFrame *tf_intake_open_frame (TfLedger *ledger, gint64 frame, const TfWork *work);
 
 TfJob *tf_job_new (const char *path);
 void tf_job_free (TfJob *job);

@@ -67,6 +67,24 @@ frame_of (TfLedger *ledger, const TfRow *row, Open *open, TfNotes *findings)
   return open->frame;
 }
 
+/* Figures of another version or that were not given are not this one's to judge. */
+static const char *
+differing_complexity (const TfFrame *frame, const TfRow *row, const TfMeasureParams *measure)
+{
+  TfComplexityParams params;
+  if (!row->complexity.there
+      || !tf_options_read_canonical (tf_complexity_options, &params, TF_COMPLEXITY_METHOD,
+                                     row->complexity_method))
+    return NULL;
+  g_auto (TfComplexity) c = { 0 };
+  tf_complexity_region (&c, frame, row->outline, measure, &params);
+  TfComplexityRow now = tf_complexity_row (&c);
+  return same (now.r_mx, row->complexity.r_mx)
+                 && same (now.strong_gradient_length_mm, row->complexity.strong_gradient_length_mm)
+             ? NULL
+             : "r_schrijver_mx";
+}
+
 static void
 remeasure (TfLedger *ledger, const TfRow *row, Open *open, TfNotes *findings)
 {
@@ -83,6 +101,8 @@ remeasure (TfLedger *ledger, const TfRow *row, Open *open, TfNotes *findings)
                              && tf_measure_region (&measure, frame, row->outline, &params, NULL)
                          ? differing (&measure, &row->measure)
                          : "pixels";
+  if (what == NULL)
+    what = differing_complexity (frame, row, &params);
   const char *name = row->is_hint ? row->mark_id : row->region;
   if (what != NULL)
     tf_notes_add (findings, "measure-differs", "ssss", tf_ledger_get_path (ledger), name,
@@ -94,7 +114,7 @@ tf_intake_remeasure (TfLedger *ledger, guint limit, TfNotes *findings, GError **
 {
   g_return_val_if_fail (ledger != NULL && findings != NULL, FALSE);
   g_autoptr (GPtrArray) rows
-      = tf_ledger_rows (ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE }, error);
+      = tf_ledger_rows (ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE, .complexity = TRUE }, error);
   if (rows == NULL)
     return FALSE;
   Open open = { 0 };

@@ -29,6 +29,7 @@ tf_intake_params_init (TfIntakeParams *params)
   *params = (TfIntakeParams){ 0 };
   tf_hint_params_init (&params->hint);
   tf_measure_params_init (&params->measure);
+  tf_complexity_params_init (&params->complexity);
   params->measure.floor_kind = TF_FLOOR_EVEN;
   params->measure.outline_term = TRUE;
 }
@@ -92,14 +93,21 @@ take_looked (Fill *fill, TfJob *job, gboolean *again, GError **error)
 }
 
 static gboolean
+put_hints (Fill *fill, const TfJob *job, gint64 frame, GError **error)
+{
+  const TfComplexityRows complexity
+      = { fill->shared.complexity, (const TfComplexityRow *)(void *)job->complexity->data,
+          job->complexity->len };
+  return tf_ledger_add_hints_with (fill->ledger, frame, fill->shared.rule, job->hints,
+                                   fill->shared.method, &complexity, error);
+}
+
+static gboolean
 take_found (Fill *fill, TfJob *job, GError **error)
 {
   gint64 frame = tf_ledger_add_frame (fill->ledger, job->path, job->checksum, job->hdu, job->plane,
                                       job->info, job->noise_gauss, error);
-  if (frame == 0
-      || (job->hints != NULL
-          && !tf_ledger_add_hints (fill->ledger, frame, fill->shared.rule, job->hints,
-                                   fill->shared.method, error)))
+  if (frame == 0 || (job->hints != NULL && !put_hints (fill, job, frame, error)))
     return FALSE;
   report (fill, job->path, TF_INTAKE_ADDED, frame, job->hints != NULL ? job->hints->len : 0, NULL);
   return TRUE;
@@ -212,6 +220,8 @@ tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *para
   fill.shared.rule = tf_options_dup_canonical (tf_hint_options, &params->hint, TF_HINT_RULE);
   fill.shared.method
       = tf_options_dup_canonical (tf_measure_options, &params->measure, TF_MEASURE_METHOD);
+  fill.shared.complexity
+      = tf_options_dup_canonical (tf_complexity_options, &params->complexity, TF_COMPLEXITY_METHOD);
   fill.workers = g_thread_pool_new (tf_job_work, &fill.shared, (int)n, FALSE, error);
   gboolean ok = fill.workers != NULL && run (&fill, files, cancel, error);
   drain (&fill);
@@ -221,5 +231,6 @@ tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *para
   tf_pool_unref (fill.shared.pool);
   g_free (fill.shared.rule);
   g_free (fill.shared.method);
+  g_free (fill.shared.complexity);
   return ok;
 }

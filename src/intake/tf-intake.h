@@ -8,6 +8,7 @@
 
 #include <glib.h>
 
+#include "tf-complexity.h"
 #include "tf-hint.h"
 #include "tf-ledger.h"
 #include "tf-measure.h"
@@ -42,6 +43,7 @@ typedef struct
   TfFrameSpec spec;
   TfHintParams hint;
   TfMeasureParams measure;
+  TfComplexityParams complexity; /* of every hint */
 } TfIntakeParams;
 void tf_intake_params_init (TfIntakeParams *params);
 
@@ -53,6 +55,10 @@ gboolean tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakePar
 /** tf_intake_measure_even: measures the rows of @query with one even floor, G, where that was not done yet, and keeps that beside what is there.
  * Rows whose frame is gone, and a ledger that cannot be written, are left as they are. Stops between frames when cancelled. */
 gboolean tf_intake_measure_even (TfLedger *ledger, double floor_gauss, const TfRowQuery *query, const TfWork *work, GError **error);
+/** tf_intake_complexity: figures of the marks and hints of @query that nobody worked out yet: of an older ledger, or kept when the program was
+ * stopped. As tf_intake_measure_even goes on where a frame is gone. @n: (out): rows worked out */
+gboolean tf_intake_complexity (TfLedger *ledger, const TfRowQuery *query, const TfComplexityParams *params, const TfWork *work, guint *n,
+                               GError **error);
 /** tf_intake_remeasure: re-measures at most @limit rows from their frames and adds "measure-differs" / "frame-missing" to @findings. */
 gboolean tf_intake_remeasure (TfLedger *ledger, guint limit, TfNotes *findings, GError **error);
 

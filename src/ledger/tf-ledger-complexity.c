@@ -12,7 +12,8 @@
 
 const char tf_complexity_columns_sql[]
     = "x.given, x.mu, x.r_mx, x.strong_gradient_length_mm, x.gradient_weighted_gauss, "
-      "x.flux_near_mx, x.strong_pieces, x.delta_candidate";
+      "x.flux_near_mx, x.strong_pieces, x.delta_candidate, "
+      "(SELECT z.text FROM method z WHERE z.id = x.method)";
 const char tf_complexity_join_sql[]
     = " LEFT JOIN complexity x ON x.id = (SELECT max (y.id) FROM complexity y WHERE y.measure = "
       "e.id)";

@@ -42,8 +42,7 @@ read_hints (TfLedger *part, gint64 frame, gint64 rule, GArray *figures, char **m
   g_autofree char *measured = tf_measure_dup_columns ("e.");
   g_autofree char *sql = g_strconcat (
       "SELECT h.unipolar, h.outline, h.notes, ", measured, ", ", tf_complexity_columns_sql,
-      ", c.text FROM hint h JOIN measure e ON e.id = h.measure", tf_complexity_join_sql,
-      " LEFT JOIN method c ON c.id = x.method WHERE h.frame = ?1 AND h.rule = ?2"
+      " FROM hint h JOIN measure e ON e.id = h.measure", tf_complexity_join_sql, " WHERE h.frame = ?1 AND h.rule = ?2"
       " ORDER BY h.ordinal",
       NULL);
   int after = 3 + (int)tf_measure_n_columns ();

@@ -168,7 +168,7 @@ guint tf_measure_n_columns (void);
 /* Puts the figures of a measured outline in once; inside a transaction. */
 gboolean tf_complexity_put (TfLedger *ledger, gint64 measure, const char *method,
                             const TfComplexityRow *row, const char *program, GError **error);
-extern const char tf_complexity_columns_sql[]; /* "x.given, x.mu ..." */
+extern const char tf_complexity_columns_sql[]; /* "x.given, x.mu ...", the method's text last */
 extern const char tf_complexity_join_sql[];    /* x: the newest figures of measure e */
 enum
 {

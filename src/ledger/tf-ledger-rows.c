@@ -98,9 +98,11 @@ read_row (sqlite3_stmt *query, gboolean complexity)
   row->time_source = dup_column (query, FIRST_COMMON + 7);
   row->simulated = sqlite3_column_int (query, FIRST_COMMON + 8);
   tf_measure_from_row (&row->measure, query, FIRST_MEASURED);
-  if (complexity)
-    row->complexity_tried = tf_complexity_from_row (
-        &row->complexity, query, FIRST_MEASURED + (int)tf_measure_n_columns ());
+  int after = FIRST_MEASURED + (int)tf_measure_n_columns ();
+  row->complexity_method
+      = complexity && tf_complexity_from_row (&row->complexity, query, after)
+            ? dup_column (query, after + TF_COMPLEXITY_COLUMNS)
+            : NULL;
   return row;
 }
 
@@ -112,7 +114,7 @@ tf_row_free (TfRow *row)
   char *texts[] = { row->mark_id, row->region,          row->passage,    row->label,
                     row->note,    row->mw_class,        row->frame_path, row->frame_checksum,
                     row->method,  row->program_version, row->person,     row->instrument,
-                    row->vantage, row->time_source };
+                    row->vantage, row->time_source,     row->complexity_method };
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     g_free (texts[k]);
   g_clear_pointer (&row->outline, tf_outline_unref);

@@ -245,7 +245,7 @@ typedef struct
   TfOutline *outline;   /* NULL when the query asked for none */
   TfMeasure measure;    /* time, floors, poles, tilt, cautions ... */
   TfComplexityRow complexity; /* when the query asked for it */
-  gboolean complexity_tried;  /* figures were worked out or refused */
+  char *complexity_method;    /* by which figures were worked out, or refused; NULL: nobody tried */
   char *time_source;
   gboolean simulated;
 } TfRow;

@@ -189,6 +189,23 @@ def _():
         assert math.isclose(again[key], first["measure"][key], rel_tol=1e-6, abs_tol=1e-6), key
 
 
+@test("hints gives complexity when asked, the same that fill keeps and export writes")
+def _():
+    path = first_disk()
+    assert all(hint["measure"]["complexity"] is None for hint in document("hints", "--json", path)[0]["hints"])
+    asked = [hint["measure"]["complexity"] for hint in document("hints", "--json", "--complexity", "--floor-kind", "even", path)[0]["hints"]]
+    given = [found for found in asked if found is not None]
+    assert given and all(found["mu"] >= 0.7 for found in given)
+    ledger, out = os.path.join(work, "tangled.ledger"), os.path.join(work, "tangled.json")
+    call("fill", ledger, path)
+    call("export", ledger, out, "--with-hints")
+    with open(out, encoding="utf-8") as file:
+        rows = json.load(file)["rows"]
+    kept = sorted(row["strong_gradient_length_mm"] for row in rows if row["strong_gradient_length_mm"] is not None)
+    assert kept == sorted(found["strong_gradient_length_mm"] for found in given)
+    assert sum(row["r_schrijver_mx"] is not None for row in rows) == len(given)
+
+
 @test("hints prints every number of the rule with its unit, and takes each as an option")
 def _():
     path = first_disk()

@@ -174,11 +174,8 @@ fill (Fixture *f, TfLedger *ledger, const TfIntakeParams *params, Tally *tally)
 }
 
 char *
-machine_ids (const char *path)
+sql_text (const char *path, const char *sql)
 {
-  static const char sql[]
-      = "SELECT hex (cid) FROM (SELECT cid FROM frame UNION ALL SELECT cid FROM measure"
-        " UNION ALL SELECT cid FROM hint) ORDER BY cid";
   sqlite3 *db = NULL;
   sqlite3_stmt *query = NULL;
   GString *ids = g_string_new (NULL);
@@ -189,6 +186,14 @@ machine_ids (const char *path)
   sqlite3_finalize (query);
   sqlite3_close (db);
   return g_string_free (ids, FALSE);
+}
+
+char *
+machine_ids (const char *path)
+{
+  return sql_text (path, "SELECT hex (cid) FROM (SELECT cid FROM frame UNION ALL SELECT cid FROM "
+                         "measure UNION ALL SELECT cid FROM hint UNION ALL SELECT cid FROM "
+                         "complexity) ORDER BY cid");
 }
 
 void

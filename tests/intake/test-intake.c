@@ -6,6 +6,10 @@
 #include <string.h>
 #include <unistd.h>
 
+#define COMPLEXITY_SUM_SQL                                                                         \
+  "SELECT count (*) || ' ' || sum (given) || ' ' || printf ('%.17g', total (r_mx)) || ' ' || "     \
+  "printf ('%.12g', total (strong_gradient_length_mm)) FROM complexity"
+
 static void
 params_init (TfIntakeParams *params, guint workers)
 {
@@ -150,6 +154,38 @@ test_frames_then_hints (Fixture *f, gconstpointer data)
   check_clean (ledger);
 }
 
+/* Figures of every hint come with it; what an older ledger lacks is worked out later, and is the
+ * same. */
+static void
+test_complexity (Fixture *f, gconstpointer data)
+{
+  TfIntakeParams params;
+  guint n = 0, given = 0;
+  params_init (&params, 2);
+  g_autoptr (TfLedger) ledger = open_ledger (f, f->path);
+  g_auto (Tally) tally = { 0 };
+  fill (f, ledger, &params, &tally);
+  const TfRowQuery query = { .hints = TRUE, .complexity = TRUE };
+  g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, &query, NULL);
+  for (guint k = 0; k < rows->len; k++)
+    {
+      const TfRow *row = g_ptr_array_index (rows, k);
+      g_assert_nonnull (row->complexity_method);
+      given += row->complexity.there;
+      g_assert_true (row->complexity.there == (row->complexity.mu >= 0.7));
+    }
+  g_assert_cmpuint (given, >, 0);
+  g_autofree char *kept = sql_text (f->path, COMPLEXITY_SUM_SQL);
+  g_assert_true (tf_intake_complexity (ledger, &query, &params.complexity, NULL, &n, NULL));
+  g_assert_cmpuint (n, ==, 0);
+  g_autofree char *none = sql_text (f->path, "DELETE FROM complexity RETURNING id");
+  g_assert_true (tf_intake_complexity (ledger, &query, &params.complexity, NULL, &n, NULL));
+  g_assert_cmpuint (n, ==, rows->len);
+  g_autofree char *again = sql_text (f->path, COMPLEXITY_SUM_SQL);
+  g_assert_cmpstr (again, ==, kept);
+  check_clean (ledger);
+}
+
 static void
 check_remeasure (TfLedger *ledger, const char *expected)
 {
@@ -206,6 +242,7 @@ main (int argc, char **argv)
                 test_bad_and_refused);
   FIXTURE_TEST ("/intake/fill/stopped-it-goes-on-from-there", test_stop_and_go_on);
   FIXTURE_TEST ("/intake/fill/hints-may-come-later", test_frames_then_hints);
+  FIXTURE_TEST ("/intake/fill/complexity-comes-with-every-hint-or-later", test_complexity);
   FIXTURE_TEST ("/intake/remeasure/what-was-changed-is-found", test_remeasure);
   add_kill_tests ();
   return g_test_run ();

@@ -37,6 +37,8 @@ void tally_clear (Tally *tally);
 void fill (Fixture *f, TfLedger *ledger, const TfIntakeParams *params, Tally *tally);
 /* Content ids of all machine rows, in order: what must be the same however the ledger was filled. */
 char *machine_ids (const char *path);
+/* The first column of all rows, a line each, through a connection of the test's own. */
+char *sql_text (const char *path, const char *sql);
 void check_clean (TfLedger *ledger);
 
 int run_child (const char *what, const char *folder);
