@@ -343,6 +343,33 @@ project_geometry (TfLedger *ledger, const char *subject, JsonObject *body, GErro
 }
 
 static gboolean
+project_divide (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
+{
+  g_auto (Current) current = { 0 };
+  const char *study = body_text (body, "study");
+  gint64 cycle = tf_json_member_int (body, "minimum", 0),
+         hemisphere = tf_json_member_int (body, "hemisphere", 0);
+  if (*study == '\0' || cycle <= 0 || (hemisphere != 1 && hemisphere != -1))
+    return damaged (ledger, "divide", error);
+  if (!find_current (ledger, subject, &current, error)
+      || !tf_run (ledger, error,
+                  "DELETE FROM divide WHERE study = ?1 AND cycle = ?2 AND hemisphere = ?3", "tii",
+                  study, cycle, hemisphere))
+    return FALSE;
+  JsonArray *points = current.body != NULL ? tf_json_member_array (current.body, "points") : NULL;
+  if (points == NULL || json_array_get_length (points) == 0)
+    return TRUE;
+  g_autofree char *text
+      = tf_json_node_dup_text (json_object_get_member (current.body, "points"), FALSE);
+  return tf_run (ledger, error,
+                 "INSERT INTO divide (study, cycle, hemisphere, points, shown, person, clock) "
+                 "VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7)",
+                 "tiitiii", study, cycle, hemisphere, text,
+                 (gint64)tf_json_member_bool (current.body, "polarity_shown", FALSE),
+                 person_key (ledger, current.body), current.clock);
+}
+
+static gboolean
 project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
                  GError **error)
 {
@@ -356,6 +383,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return project_resolved (ledger, subject, body, error);
   if (strcmp (kind, "geometry") == 0)
     return project_geometry (ledger, subject, body, error);
+  if (strcmp (kind, "divide") == 0)
+    return project_divide (ledger, subject, body, error);
   return project_note (ledger, subject, body, error);
 }
 
@@ -402,7 +431,7 @@ gboolean
 tf_act_is_deed (const char *kind)
 {
   static const char *const kinds[] = { "keep", "withdraw", "drop", "class",
-                                       "note", "resolve", "geometry", NULL };
+                                       "note", "resolve", "geometry", "divide", NULL };
   return g_strv_contains (kinds, kind);
 }
 

@@ -137,6 +137,7 @@ static const char *const compared[][2] = {
                 "x.id = t.author) FROM @.resolved t" },
   { "shift", "SELECT uid, time, clock, " PERSON " FROM @.shift t" },
   { "geometry", "SELECT frame, text, clock, " PERSON " FROM @.geometry t" },
+  { "divide", "SELECT study, cycle, hemisphere, points, shown, clock, " PERSON " FROM @.divide t" },
   { "point", "SELECT hint, CASE hint WHEN 1 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id "
              "= t.mark) END, frame, "
              "CASE hint WHEN 1 THEN region ELSE " REGION

@@ -44,7 +44,7 @@
  *     link, cut     region, region         later   lineage            passages of one region on later rotations
  *     passage rows are machine rows of `follow` (content id of rotation law, vantage, first mark); hand-made links are acts
  *     scale         instrument             later   instrument.scale
- *     divide        study, minimum, hemisphere     later   divide      points, band; set back to computed = undo
+ *     divide        study, minimum, hemisphere     divide         points as drawn, whether polarity was in sight; none = computed again
  *     sieve, study  study                  later   sieve, study, edition (named, checksummed state of a study)
  *     case          case                   later   docket_case        what the docket found, its evidence, controls with seed
  *     call          case                   later   who is asked to judge
@@ -184,7 +184,14 @@ static const char projection_3[]
       "person INTEGER NOT NULL REFERENCES person (id), text TEXT NOT NULL, "
       "clock INTEGER NOT NULL, PRIMARY KEY (frame, person)) STRICT, WITHOUT ROWID;";
 
-const char *const tf_ledger_projections[] = { projection_1, projection_2, projection_3, NULL };
+static const char projection_4[]
+    = "CREATE TABLE divide (study TEXT NOT NULL, cycle INTEGER NOT NULL, "
+      "hemisphere INTEGER NOT NULL, points TEXT NOT NULL, shown INTEGER NOT NULL, "
+      "person INTEGER NOT NULL REFERENCES person (id), clock INTEGER NOT NULL, "
+      "PRIMARY KEY (study, cycle, hemisphere)) STRICT, WITHOUT ROWID;";
+
+const char *const tf_ledger_projections[]
+    = { projection_1, projection_2, projection_3, projection_4, NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -293,9 +300,12 @@ static const char *const version_2[] = { COMPLEXITY_SQL, projection_2, version_2
 
 static const char *const version_3[] = { projection_3, NULL };
 
+static const char *const version_4[] = { projection_4, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
   { 3, version_3 },
+  { 4, version_4 },
   { 0, NULL },
 };

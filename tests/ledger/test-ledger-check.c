@@ -8,6 +8,8 @@
 
 #include <string.h>
 
+#include "tf-ledger-divides.h"
+
 /* Two frames with hints, three marks, a drop, a class, a note, one undone deed. */
 static void
 set_up_full (Fixture *f, gconstpointer data)
@@ -40,6 +42,10 @@ set_up_full (Fixture *f, gconstpointer data)
   g_assert_true (tf_ledger_hand_over (f->ledger, person, TF_TIME_UNKNOWN, &error));
   TfCorrection correction = { 511, 512, 480, 3 };
   g_assert_true (tf_ledger_set_geometry (f->ledger, 1, other, &correction, &error));
+  TfTime times[] = { tf_time_read ("2007-06-01"), tf_time_read ("2009-03-01") };
+  double lats[] = { 17, 14 };
+  const TfMovedDivide divide = { 24, -1, 2, times, lats, TRUE };
+  g_assert_true (tf_ledger_set_divide (f->ledger, "default", &divide, person, &error));
   fixture_keep (f->ledger, 2, other, 0, 0, 13);
   g_assert_true (tf_ledger_undo (f->ledger, other, NULL, &error));
   g_assert_no_error (error);
@@ -88,6 +94,8 @@ static const Tampering tamperings[] = {
   { "a-shift-gone", "DELETE FROM shift", "check-projection" },
   { "a-geometry", "UPDATE geometry SET text = replace (text, '480', '481')", "check-projection" },
   { "a-geometry-more", "INSERT INTO geometry VALUES (2, 1, '1,2,30,4', 9)", "check-projection" },
+  { "a-divide", "UPDATE divide SET points = replace (points, '17', '27')", "check-projection" },
+  { "a-divide-never-seen", "UPDATE divide SET shown = 0", "check-projection" },
   { "a-drop-more", "INSERT INTO dropped VALUES (4, 1)", "check-projection" },
   { "an-undone-deed", "UPDATE deed SET undone = 0", "check-projection" },
   { "a-region-number", "UPDATE region SET number = 'T2013-0007' WHERE id = 1", "check-projection" },

@@ -9,6 +9,7 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   add_acts_tests ();
   add_check_tests ();
+  add_divides_tests ();
   add_faults_tests ();
   add_file_tests ();
   add_machine_tests ();

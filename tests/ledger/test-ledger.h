@@ -45,6 +45,7 @@ gboolean fixture_finds (TfLedger *ledger, const char *code);
 
 void add_acts_tests (void);
 void add_check_tests (void);
+void add_divides_tests (void);
 void add_faults_tests (void);
 void add_file_tests (void);
 void add_machine_tests (void);
