@@ -32,6 +32,9 @@ const TfNoteKind tf_note_kinds_laws[] = {
     N_ ("The cycle leans on a provisional minimum that a person entered.") },
   { "divides-moved", TF_NOTE_CAUTION,
     N_ ("Divides were moved by hand: {0} (cycle begun and hemisphere).") },
+  { "divides-shown", TF_NOTE_CAUTION,
+    N_ ("Polarity was in sight while these divides were moved: {0}. What they say of Hale's law is "
+        "circular to that extent.") },
   { "every-mark-is-its-own-passage", TF_NOTE_CAUTION,
     N_ ("Marks are not linked into passages yet: every mark counts as a passage of its own, so one "
         "region seen on several "

@@ -34,7 +34,8 @@ tf_verb_export (int argc, char **argv)
   g_autoptr (GPtrArray) keep = NULL;
   g_autoptr (TfStudy) study = tf_study_new_default ();
   g_autoptr (TfLedger) ledger = tf_batch_open_measured (argv[1], with_hints, &error);
-  g_autoptr (GArray) rows = ledger != NULL ? tf_export_rows (ledger, study, with_hints, &keep, &error) : NULL;
+  gboolean ready = ledger != NULL && tf_study_read_divides (study, ledger, &error);
+  g_autoptr (GArray) rows = ready ? tf_export_rows (ledger, study, with_hints, &keep, &error) : NULL;
   if (rows == NULL || !tf_export_write (argv[2], rows, study, source != NULL ? source : argv[1], &error))
     {
       tf_batch_say_error (error);

@@ -83,7 +83,8 @@ tf_verb_laws (int argc, char **argv)
 
   g_autoptr (GError) error = NULL;
   g_autoptr (TfLedger) ledger = tf_batch_open_measured (argv[1], with_hints, &error);
-  g_autoptr (TfFindings) findings = ledger != NULL ? tf_study_run (study, ledger, &error) : NULL;
+  gboolean ready = ledger != NULL && tf_study_read_divides (study, ledger, &error);
+  g_autoptr (TfFindings) findings = ready ? tf_study_run (study, ledger, &error) : NULL;
   if (findings == NULL)
     {
       tf_batch_say_error (error);

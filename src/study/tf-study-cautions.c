@@ -43,6 +43,8 @@ note_divides (TfNotes *cautions, const TfStudy *study)
                                 side > 0 ? "N" : "S");
   if (names->len > 0)
     tf_notes_add (cautions, "divides-moved", "s", names->str);
+  if (study->divides_shown != NULL)
+    tf_notes_add (cautions, "divides-shown", "s", study->divides_shown);
   if (!isnan (study->divide.provisional_year))
     tf_notes_add (cautions, "minimum-provisional", "d", study->divide.provisional_year);
 }

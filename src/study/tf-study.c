@@ -50,6 +50,7 @@ tf_study_free (TfStudy *study)
     return;
   if (study->divides != NULL)
     tf_divides_unref (study->divides);
+  g_free (study->divides_shown);
   g_free (study->name);
   g_free (study);
 }

@@ -53,9 +53,13 @@ typedef struct
   TfJoyParams joy;
   TfEmergenceParams emergence;
   TfDivides *divides; /* the moved ones; their options are those of @divide. NULL: all computed */
+  char *divides_shown; /* "24 N, 25 S": those moved with polarity in sight; NULL: none */
 } TfStudy;
 TfStudy *tf_study_new_default (void);
 void tf_study_free (TfStudy *study);
+/** tf_study_read_divides: takes the divides that people moved for the study of this name in the
+ * ledger. */
+gboolean tf_study_read_divides (TfStudy *study, TfLedger *ledger, GError **error);
 
 /** TfWhatIf: share that breaks and Joy slope under one other choice, all else as chosen. */
 typedef struct

@@ -7,6 +7,7 @@
 
 #include "tf-check.h"
 #include "tf-json.h"
+#include "tf-ledger-divides.h"
 
 static TfFindings *
 run (const TestLedger *t, const TfStudy *study)
@@ -112,6 +113,35 @@ test_default_study (void)
   g_assert_null (tf_notes_find (found->cautions, "instruments-unscaled-pooled"));
   for (guint k = 0; k < 5; k++)
     g_assert_cmpint (found->marks[k], >, 0);
+}
+
+/* A divide that somebody moved in the ledger speaks in the study, and is told. */
+static void
+test_divide_of_the_ledger (void)
+{
+  g_auto (TestLedger) t = { 0 };
+  test_study_ledger_open (&t);
+  gint64 frame = test_study_frame (&t, "2008-06-01T00:00:00Z", "TEST-A", 20);
+  TfMeasure young = test_study_measure (30, -1); /* above the divide: cycle 24 */
+  young.time = tf_time_read ("2008-06-01T00:00:00Z");
+  test_study_mark (&t, frame, 0, young);
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  g_assert_true (tf_study_read_divides (study, t.ledger, NULL));
+  g_assert_null (study->divides);
+  g_autoptr (TfFindings) before = run (&t, study);
+  g_assert_cmpuint (hale_row (before, 24, 1)->keeps, ==, 1);
+  TfTime times[] = { tf_time_read ("2007-01-01"), tf_time_read ("2010-01-01") };
+  double lats[] = { 40, 38 };
+  const TfMovedDivide divide = { 24, 1, 2, times, lats, TRUE };
+  gint64 person = tf_ledger_person (t.ledger, "north", NULL);
+  g_assert_true (tf_ledger_set_divide (t.ledger, "default", &divide, person, NULL));
+  g_assert_true (tf_study_read_divides (study, t.ledger, NULL));
+  g_autoptr (TfFindings) after = run (&t, study);
+  g_assert_cmpuint (hale_row (after, 23, 1)->breaks, ==, 1);
+  g_assert_nonnull (tf_notes_find (after->cautions, "divides-moved"));
+  g_assert_nonnull (tf_notes_find (after->cautions, "divides-shown"));
+  g_autofree char *words = tf_findings_dup_words (after, study);
+  g_assert_nonnull (strstr (words, "24 N"));
 }
 
 /* The tilt that breaks the law is not in Joy's sample, and is in the plain mean. */
@@ -365,5 +395,6 @@ test_study_add_ledger (void)
   g_test_add_func ("/study/what-if/other-choices-each-alone", test_what_ifs);
   g_test_add_func ("/study/json/the-document-has-its-keys-and-numbers", test_json);
   g_test_add_func ("/study/words/the-numbers-as-in-a-paper", test_words);
+  g_test_add_func ("/study/ledger/a-moved-divide-speaks-and-is-told", test_divide_of_the_ledger);
   g_test_add_func ("/study/run/the-same-ledger-gives-the-same-digits", test_repeats);
 }
