@@ -15,6 +15,8 @@ G_BEGIN_DECLS
 
 /* From this radius on a struck diamond has a seam beside its stroke. */
 #define TF_SEAM_RADIUS 6.0
+/* An open ring looks smaller than a disc of the same width: it is drawn larger by this. */
+#define TF_RING_SHARE 1.12
 
 /** tf_chart_mix: @a moved by @share (0 to 1) towards @b; keeps the opacity of @a. */
 TfColour tf_chart_mix (TfColour a, TfColour b, double share);

@@ -90,6 +90,7 @@ tf_chart_edge (const TfChartStyle *style)
 
 /* -- symbols --------------------------------------------------------------------------------- */
 
+
 static void
 circle (cairo_t *cr, double x, double y, double radius)
 {
@@ -117,7 +118,7 @@ tf_chart_pole (cairo_t *cr, const TfChartStyle *style, double x, double y, doubl
     }
   else if (polarity < 0)
     {
-      circle (cr, x, y, radius - width / 2);
+      circle (cr, x, y, radius * TF_RING_SHARE - width / 2);
       tf_chart_set (cr, style->negative);
       cairo_set_line_width (cr, width);
       cairo_stroke (cr);

@@ -152,6 +152,14 @@ stroke_item (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
              ghost || dashed ? 2 : 0);
 }
 
+void
+tf_overlay_stroke_outline (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+                           TfStroke stroke, gboolean chosen)
+{
+  TfOverlayItem item = { .stroke = stroke, .chosen = chosen };
+  stroke_item (cr, overlay, style, &item);
+}
+
 static void
 draw_rings (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
             const TfOverlayItem *item, double box[4])
@@ -184,7 +192,7 @@ draw_pole (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, dou
            double radius, int polarity)
 {
   cairo_new_path (cr);
-  cairo_arc (cr, x, y, radius + 1.5, 0, 2 * G_PI);
+  cairo_arc (cr, x, y, radius * (polarity < 0 ? TF_RING_SHARE : 1) + 1.5, 0, 2 * G_PI);
   if (polarity < 0) /* a ring stays open, so that the field can be seen in it */
     {
       cairo_new_sub_path (cr);
@@ -229,6 +237,59 @@ draw_item_axis (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style
   draw_poles (cr, overlay, style, item);
 }
 
+/* -- lines of no outline --------------------------------------------------------------------- */
+
+void
+tf_overlay_stroke_line (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+                        TfLineKind kind)
+{
+  static const struct
+  {
+    double dash[4], width;
+    int n;
+  } kinds[TF_N_LINE_KINDS] = {
+    [TF_LINE_INVERSION] = { { 9, 2.5, 2, 2.5 }, 2.0, 4 },
+    [TF_LINE_PENUMBRA] = { { 3, 2.5 }, 1.1, 2 },
+    [TF_LINE_UMBRA] = { { 1.2, 1.4 }, 1.5, 2 },
+  };
+  TfOverlayItem plain = { .stroke = TF_STROKE_MARK };
+  TfChartStyle over = tf_chart_style (overlay->on_dark, style->contrast, style->text_pt);
+  TfColour line = kind == TF_LINE_INVERSION && !style->contrast
+                      ? tf_chart_mix (over.teal, over.ink, overlay->on_dark ? 0.35 : 0)
+                      : tf_overlay_line_colour (overlay, style, &plain);
+  stroke_on (cr, tf_overlay_halo_colour (overlay), line,
+             kinds[kind].width + (style->contrast ? 0.6 : 0), kinds[kind].dash, kinds[kind].n);
+}
+
+static void
+along_points (double t, double *lon_deg, double *lat_deg, gconstpointer data)
+{
+  const TfOverlayLine *line = data;
+  double at = t * (line->n - 1);
+  guint k = MIN ((guint)at, line->n - 2);
+  const TfVertex *a = &line->points[k], *b = a + 1;
+  *lon_deg = a->lon_deg + (at - k) * remainder (b->lon_deg - a->lon_deg, 360);
+  *lat_deg = a->lat_deg + (at - k) * (b->lat_deg - a->lat_deg);
+}
+
+static void
+draw_lines (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style)
+{
+  for (int kind = 0; kind < TF_N_LINE_KINDS; kind++)
+    {
+      g_autoptr (TfTrail) trail = tf_trail_new ();
+      for (guint k = 0; k < overlay->n_lines; k++)
+        if ((int)overlay->lines[k].kind == kind && overlay->lines[k].n > 1)
+          tf_trail_add_line (trail, overlay, along_points, &overlay->lines[k],
+                             overlay->lines[k].n - 1, FALSE);
+      if (tf_trail_get_n_pieces (trail) == 0)
+        continue;
+      cairo_new_path (cr);
+      tf_trail_path (trail, cr);
+      tf_overlay_stroke_line (cr, overlay, style, (TfLineKind)kind);
+    }
+}
+
 static void
 draw_draft (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style)
 {
@@ -254,6 +315,14 @@ draw_draft (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style)
   cairo_fill (cr);
 }
 
+/* Ghosts have a switch of their own: the caller gives them or not; what is being drawn is seen. */
+static gboolean
+shows_outline (const TfOverlay *overlay, const TfOverlayItem *item)
+{
+  gboolean always = item->stroke == TF_STROKE_GHOST || item->stroke == TF_STROKE_DRAFT;
+  return item->outline != NULL && (overlay->outlines || always);
+}
+
 static void
 draw_items (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, double (*boxes)[4])
 {
@@ -263,7 +332,7 @@ draw_items (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, do
         const TfOverlayItem *item = &overlay->items[k];
         if ((item->chosen != 0) != chosen)
           continue;
-        if (overlay->outlines && item->outline != NULL)
+        if (shows_outline (overlay, item))
           draw_rings (cr, overlay, style, item, boxes[k]);
         if (overlay->axes)
           draw_item_axis (cr, overlay, style, item);
@@ -287,6 +356,7 @@ tf_overlay_draw (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *styl
   if (overlay->graticule)
     draw_graticule (cr, overlay, style);
   draw_limb (cr, overlay, style);
+  draw_lines (cr, overlay, style);
   draw_items (cr, overlay, style, boxes);
   draw_draft (cr, overlay, style);
   if (overlay->labels)

@@ -34,6 +34,21 @@ typedef struct
   int verdict; /* TfVerdictKind, -1 none: a small diamond beside the label when it breaks */
 } TfOverlayItem;
 
+/** TfOverlayLine: a line that belongs to no outline; each kind has dashes of its own. */
+typedef enum
+{
+  TF_LINE_INVERSION, /* between the polarities */
+  TF_LINE_PENUMBRA,  /* edge of a spot in the intensity frame of the same time */
+  TF_LINE_UMBRA,
+  TF_N_LINE_KINDS
+} TfLineKind;
+typedef struct
+{
+  TfLineKind kind;
+  const TfVertex *points; /* borrowed; Carrington */
+  guint n;
+} TfOverlayLine;
+
 typedef struct
 {
   TfProjectFunc project;
@@ -43,6 +58,8 @@ typedef struct
   gboolean graticule, outlines, axes, labels;
   const TfOverlayItem *items;
   guint n_items;
+  const TfOverlayLine *lines; /* nullable */
+  guint n_lines;
   double limb_x, limb_y, limb_rx, limb_ry, limb_turn; /* ellipse of the limb; rx NaN: none */
   const double (*draft)[2]; /* line being drawn, in area points; nullable */
   guint n_draft;
@@ -51,6 +68,12 @@ typedef struct
 
 void
 tf_overlay_draw (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style, TfArea area);
+/** tf_overlay_stroke_line: strokes the path of @cr as the overlay does a line of that kind. */
+void tf_overlay_stroke_line (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+                             TfLineKind kind);
+/** tf_overlay_stroke_outline: strokes the path of @cr as the overlay does an item's outline. */
+void tf_overlay_stroke_outline (cairo_t *cr, const TfOverlay *overlay, const TfChartStyle *style,
+                                TfStroke stroke, gboolean chosen);
 /** tf_overlay_hit: index of the item whose outline holds the point (the smallest), or -1. */
 int tf_overlay_hit (const TfOverlay *overlay, TfArea area, double x, double y);
 

@@ -128,18 +128,35 @@ set_limb (TfOverlay *overlay, const Projector *p)
   overlay->limb_rx = overlay->limb_ry = tf_geometry_disk_radius (p->geometry) * p->view->zoom;
 }
 
+static void
+add_ghosts (TfPlate *self, GArray *items)
+{
+  const GPtrArray *ghosts = tf_session_get_ghosts (self->session);
+  for (guint k = 0; ghosts != NULL && k < ghosts->len; k++)
+    {
+      const TfGhost *ghost = g_ptr_array_index (ghosts, k);
+      TfOverlayItem item = { .outline = ghost->outline,
+                             .stroke = TF_STROKE_GHOST,
+                             .label = ghost->label,
+                             .verdict = -1 };
+      set_poles (&item, NULL);
+      g_array_append_val (items, item);
+    }
+}
+
 static TfOverlay
 overlay_for (TfPlate *self, Projector *p, GArray *items)
 {
+  TfSession *session = self->session;
   TfOverlay overlay = { .project = project,
                         .data = p,
                         .central_carrington_deg = tf_geometry_central_carrington (p->geometry),
                         .step_deg = 10,
-                        .graticule = TRUE,
-                        .outlines = TRUE,
-                        .axes = TRUE,
-                        .labels = TRUE,
+                        .graticule = tf_session_get_overlay (session, TF_OVERLAY_GRATICULE),
+                        .outlines = tf_session_get_overlay (session, TF_OVERLAY_OUTLINES),
+                        .axes = tf_session_get_overlay (session, TF_OVERLAY_AXES),
                         .on_dark = TRUE };
+  overlay.labels = TRUE; /* of the outlines that are drawn */
   overlay.items = (const TfOverlayItem *)(gconstpointer)items->data;
   overlay.n_items = items->len;
   set_limb (&overlay, p);
@@ -232,7 +249,11 @@ tf_plate_draw_overlay (TfPlate *self, int width, int height)
                                               (int)full_height * scale);
   Projector p = { &self->overlay_view, tf_frame_get_geometry (frame), TF_PLATE_MARGIN };
   g_autoptr (GArray) items = collect_items (self);
+  add_ghosts (self, items);
   TfOverlay overlay = overlay_for (self, &p, items);
+  g_autoptr (GArray) lines = tf_session_dup_lines (self->session);
+  overlay.lines = (const TfOverlayLine *)(gconstpointer)lines->data;
+  overlay.n_lines = lines->len;
   TfChartStyle style = overlay_style (self);
   cairo_t *cr = cairo_create (self->overlay);
   cairo_scale (cr, scale, scale);

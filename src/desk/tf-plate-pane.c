@@ -17,6 +17,7 @@ struct _TfPlatePane
   GtkBox *foot;
   GtkLabel *progress_words;
   GtkProgressBar *progress;
+  GtkButton *as_stored;
   GtkMenuButton *range_button;
   GtkScale *range;
   GtkLabel *range_words;
@@ -106,6 +107,10 @@ frame_changed (TfPlatePane *self)
                           text != NULL && !open && !tf_session_is_loading (self->session));
   gtk_label_set_label (self->trouble, text != NULL ? text : "");
   gtk_widget_set_visible (self->tools, open);
+  gboolean map = open && tf_geometry_is_map (tf_frame_get_geometry (tf_session_get_frame (self->session)));
+  gtk_button_set_label (self->as_stored, map ? _ ("map") : _ ("disk"));
+  gtk_widget_set_tooltip_text (GTK_WIDGET (self->as_stored),
+                               map ? _ ("The map as stored") : _ ("As observed"));
   status_changed (self);
 }
 
@@ -181,6 +186,7 @@ tf_plate_pane_class_init (TfPlatePaneClass *klass)
   gtk_widget_class_bind_template_child (widget, TfPlatePane, progress_words);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, progress);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range_button);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, as_stored);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range_words);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range);
   gtk_widget_class_bind_template_callback (widget, range_moved);

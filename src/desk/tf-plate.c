@@ -65,6 +65,8 @@ void
 tf_plate_update_readout (TfPlate *self)
 {
   char *text = dup_readout (self);
+  if (self->session != NULL)
+    tf_session_set_pointer (self->session, self->pointer_in, self->pointer_x, self->pointer_y);
   if (g_strcmp0 (text, self->readout) == 0)
     {
       g_free (text);
@@ -121,9 +123,10 @@ tf_plate_dup_description (TfPlate *self)
   g_string_append_printf (text, _ ("frame of %s"), time != NULL ? time : _ ("unknown time"));
   if (vantage != NULL && !tf_geometry_is_map (&info->geometry))
     g_string_append_printf (text, _ (" seen from %s"), vantage);
+  TfLook look = tf_session_get_view (self->session)->look;
+  gboolean map = look == TF_LOOK_DISK && tf_geometry_is_map (&info->geometry);
   g_string_append_printf (text, _ ("; look: %s; field range ± %.0f G"),
-                          _ (looks[tf_session_get_view (self->session)->look]),
-                          tf_session_get_range (self->session));
+                          map ? _ ("map") : _ (looks[look]), tf_session_get_range (self->session));
   append_regions (self, text);
   return g_string_free (text, FALSE);
 }
@@ -181,6 +184,8 @@ tf_plate_set_session (TfPlate *self, TfSession *session)
   g_signal_connect_object (session, "view-changed", G_CALLBACK (picture_changed), self,
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "regions-changed", G_CALLBACK (regions_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "overlays-changed", G_CALLBACK (regions_changed), self,
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self,
                            G_CONNECT_SWAPPED);

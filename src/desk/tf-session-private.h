@@ -9,6 +9,7 @@
 #include "tf-lane.h"
 #include "tf-loader.h"
 #include "tf-session.h"
+#include "tf-tracer.h"
 #include "tf-wings.h"
 #include "tf-writer.h"
 
@@ -20,6 +21,7 @@ typedef enum
   TF_SIGNAL_FRAMES,
   TF_SIGNAL_FRAME,
   TF_SIGNAL_VIEW,
+  TF_SIGNAL_OVERLAYS,
   TF_SIGNAL_REGIONS,
   TF_SIGNAL_CHOICE,
   TF_SIGNAL_POINTS,
@@ -70,8 +72,15 @@ struct _TfSession
 
   TfView view;
   gboolean fitted, north_up;
+  gboolean pointer_in; /* over the plate */
+  double pointer_x, pointer_y;
   double range;
   TfPalette palette;
+
+  guint overlays; /* one bit a TfOverlayPart */
+  TfTracer *tracer;
+  GPtrArray *ghosts;  /* TfGhost; NULL */
+  guint ghost_serial; /* of the newest question for them */
 
   GListStore *regions;
   TfRegionItem *region;
@@ -131,5 +140,9 @@ void tf_session_restore_draft (TfSession *session, const char *text);
 /** tf_session_forget_hoped: what was on its way into the ledger is there, or will not come. */
 void tf_session_forget_hoped (TfSession *self);
 void tf_session_connect_writer (TfSession *session);
+void tf_session_init_overlays (TfSession *session);
+void tf_session_clear_overlays (TfSession *session);
+/** tf_session_update_overlays: asks for the lines and ghosts of what is on the plate now. */
+void tf_session_update_overlays (TfSession *session);
 
 G_END_DECLS

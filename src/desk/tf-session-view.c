@@ -93,11 +93,99 @@ tf_session_zoom (TfSession *self, double factor, double vx, double vy)
 }
 
 void
+tf_session_set_pointer (TfSession *self, gboolean in, double vx, double vy)
+{
+  g_return_if_fail (TF_IS_SESSION (self));
+  self->pointer_in = in;
+  self->pointer_x = vx;
+  self->pointer_y = vy;
+}
+
+gboolean
+tf_session_get_pointer (TfSession *self, double *vx, double *vy)
+{
+  *vx = self->pointer_x;
+  *vy = self->pointer_y;
+  return self->pointer_in;
+}
+
+/* -- from one look to another ---------------------------------------------------------------- */
+
+/* View pixels a degree on the Sun, in the middle of the disk; on a map along a row. */
+static double
+pixels_a_degree (const TfView *view, const TfGeometry *geometry)
+{
+  if (view->look != TF_LOOK_DISK)
+    return view->zoom;
+  if (tf_geometry_is_map (geometry))
+    return view->zoom / hypot (geometry->cd[0][0], geometry->cd[1][0]);
+  return view->zoom * tf_geometry_disk_radius (geometry) * G_PI / 180;
+}
+
+/* Turns: a close look turns about its middle while it moves. */
+static void
+hold (TfView *view, const TfGeometry *geometry, const TfPlace *place, double vx, double vy)
+{
+  double x, y;
+  for (guint turn = 0; turn < 16; turn++)
+    {
+      if (!tf_view_from_sun (view, geometry, place->carrington_lon_deg, place->lat_deg, &x, &y)
+          || hypot (vx - x, vy - y) < 1e-6)
+        return;
+      tf_view_pan (view, geometry, vx - x, vy - y);
+    }
+}
+
+/* What the new look is made about: the place under the pointer, else in the middle of the view. */
+static gboolean
+place_held (TfSession *self, double *vx, double *vy, TfPlace *place)
+{
+  const TfGeometry *geometry = geometry_of (self);
+  *vx = self->pointer_x;
+  *vy = self->pointer_y;
+  if (self->pointer_in && tf_view_to_sun (&self->view, geometry, *vx, *vy, place))
+    return TRUE;
+  *vx = self->view.width / 2;
+  *vy = self->view.height / 2;
+  return !self->fitted && tf_view_to_sun (&self->view, geometry, *vx, *vy, place);
+}
+
+static gboolean
+has_close_centre (TfSession *self)
+{
+  return self->draft != NULL || self->region != NULL;
+}
+
+/* The same point of the Sun stays under the pointer, and a part seen large stays large. A close
+ * look of a chosen region is about that region. */
+void
 tf_session_set_look (TfSession *self, TfLook look)
 {
   g_return_if_fail (TF_IS_SESSION (self));
+  const TfGeometry *geometry = geometry_of (self);
+  TfPlace place;
+  double vx, vy;
+  gboolean whole = self->fitted;
+  if (look == self->view.look || geometry == NULL)
+    {
+      self->view.look = look;
+      tf_session_fit (self);
+      tf_session_emit (self, TF_SIGNAL_VIEW);
+      return;
+    }
+  double scale = pixels_a_degree (&self->view, geometry);
+  gboolean held = place_held (self, &vx, &vy, &place)
+                  && !(look == TF_LOOK_CLOSE && has_close_centre (self));
   self->view.look = look;
   tf_session_fit (self);
+  if (held)
+    {
+      if (!whole)
+        tf_view_zoom (&self->view, geometry, scale / pixels_a_degree (&self->view, geometry),
+                      self->view.width / 2, self->view.height / 2);
+      hold (&self->view, geometry, &place, vx, vy);
+      self->fitted = FALSE;
+    }
   tf_session_emit (self, TF_SIGNAL_VIEW);
 }
 

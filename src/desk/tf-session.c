@@ -12,6 +12,7 @@ G_DEFINE_FINAL_TYPE (TfSession, tf_session, G_TYPE_OBJECT)
 static const char *const signal_names[] = {
   [TF_SIGNAL_LEDGER] = "ledger-changed",       [TF_SIGNAL_FRAMES] = "frames-changed",
   [TF_SIGNAL_FRAME] = "frame-changed",         [TF_SIGNAL_VIEW] = "view-changed",
+  [TF_SIGNAL_OVERLAYS] = "overlays-changed",
   [TF_SIGNAL_REGIONS] = "regions-changed",     [TF_SIGNAL_CHOICE] = "choice-changed",
   [TF_SIGNAL_POINTS] = "points-changed",       [TF_SIGNAL_STATUS] = "status-changed",
   [TF_SIGNAL_PERSON_NEEDED] = "person-needed",
@@ -39,6 +40,7 @@ dispose (GObject *object)
 {
   TfSession *self = TF_SESSION (object);
   tf_session_close (self);
+  tf_session_clear_overlays (self);
   g_clear_pointer (&self->loader, tf_loader_free);
   g_clear_pointer (&self->frame, tf_frame_unref);
   g_clear_object (&self->frame_item);
@@ -114,6 +116,7 @@ tf_session_init (TfSession *self)
   self->view.width = self->view.height = 1;
   self->view.zoom = 1;
   tf_session_update_pick (self);
+  tf_session_init_overlays (self);
 }
 
 TfSession *

@@ -11,6 +11,7 @@
  * "frames-changed"   the list of frames
  * "frame-changed"    the chosen frame, or its pixels came, or could not be had
  * "view-changed"     what part is seen, range, palette
+ * "overlays-changed" what lies over the picture: switched, or lines and ghosts came
  * "regions-changed"  hints and marks on the plate
  * "choice-changed"   the chosen region, the draft, the tool, the measure of either
  * "points-changed"   the dots of the wings and the stretch picked on them
@@ -95,6 +96,10 @@ void tf_session_set_view_size (TfSession *session, double width, double height);
 void tf_session_pan (TfSession *session, double dx, double dy);
 void tf_session_zoom (TfSession *session, double factor, double vx, double vy);
 void tf_session_fit (TfSession *session);
+/** tf_session_set_pointer: where the pointer is over the view, if it is. */
+void tf_session_set_pointer (TfSession *session, gboolean in, double vx, double vy);
+gboolean tf_session_get_pointer (TfSession *session, double *vx, double *vy);
+/** tf_session_set_look: the point under the pointer stays there. */
 void tf_session_set_look (TfSession *session, TfLook look);
 gboolean tf_session_get_north_up (TfSession *session);
 void tf_session_set_north_up (TfSession *session, gboolean north_up);
@@ -104,6 +109,36 @@ TfPalette tf_session_get_palette (TfSession *session);
 void tf_session_set_palette (TfSession *session, TfPalette palette);
 TfPool *tf_session_get_pool (TfSession *session);
 TfWorkers *tf_session_get_workers (TfSession *session);
+
+/* -- what lies over the picture (tf-session-overlays.c) */
+typedef enum
+{
+  TF_OVERLAY_GRATICULE,
+  TF_OVERLAY_OUTLINES,
+  TF_OVERLAY_AXES,
+  TF_OVERLAY_INVERSION,
+  TF_OVERLAY_SPOTS,
+  TF_OVERLAY_GHOSTS,
+  TF_N_OVERLAYS
+} TfOverlayPart;
+/** tf_overlay_name: "graticule", ...: of the action and the preference */
+const char *tf_overlay_name (TfOverlayPart part);
+gboolean tf_session_get_overlay (TfSession *session, TfOverlayPart part);
+void tf_session_set_overlay (TfSession *session, TfOverlayPart part, gboolean on);
+/** tf_session_dup_lines: (element-type TfOverlayLine): inversion lines and spots that are on and
+ * found; their points are borrowed until the next signal. */
+GArray *tf_session_dup_lines (TfSession *session);
+/** tf_session_is_tracing: lines are still looked for. */
+gboolean tf_session_is_tracing (TfSession *session);
+typedef struct
+{
+  TfOutline *outline; /* carried to this frame's time */
+  char *label;        /* region; "" of a hint */
+} TfGhost;
+/** tf_session_get_ghosts: (nullable) (element-type TfGhost): of the frame before, when they are on */
+const GPtrArray *tf_session_get_ghosts (TfSession *session);
+/** tf_session_find_companion: (nullable): the intensity frame of the roll that shows the same Sun */
+const TfFrameRow *tf_session_find_companion (TfSession *session);
 
 /* -- hints, marks, the choice */
 /** tf_session_get_regions: of TfRegionItem, strongest first */

@@ -14,6 +14,11 @@ void tf_window_add_actions (TfWindow *window);
 /** tf_window_update_actions: which commands are possible now, and the state of those that have
  * one */
 void tf_window_update_actions (TfWindow *window);
+/* tf-actions-plate.c */
+void tf_window_add_plate_actions (TfWindow *window);
+void tf_window_update_plate_actions (TfWindow *window);
+/** tf_window_restore_plate: as the preferences say. */
+void tf_window_restore_plate (TfWindow *window);
 /* tf-window-keys.c */
 /** tf_window_press: @detailed: a window action as of a key: done, or said why it cannot be */
 void tf_window_press (TfWindow *window, const char *detailed);

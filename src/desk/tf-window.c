@@ -256,6 +256,8 @@ connect_session (TfWindow *self)
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "view-changed", G_CALLBACK (tf_window_update_actions), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "overlays-changed", G_CALLBACK (tf_window_update_actions), self,
+                           G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "message", G_CALLBACK (message), self, 0);
 }
 
@@ -406,6 +408,7 @@ restore_preferences (TfWindow *self)
     tf_session_set_person (self->session, person);
   if (g_strcmp0 (palette, "amber-indigo") == 0)
     tf_session_set_palette (self->session, TF_PALETTE_AMBER_INDIGO);
+  tf_window_restore_plate (self);
 }
 
 /* The scroller within an AdwStatusPage takes the keyboard and has no name; the page's own title is told already. */

@@ -71,6 +71,16 @@ report_refused (Fill *fill, const TfJob *job, gint64 frame)
   report (fill, job->path, TF_INTAKE_REFUSED, frame, 0, message);
 }
 
+/* A frame that was refused before is refused again, with its reason. */
+static void
+report_known (Fill *fill, const char *path, gint64 frame)
+{
+  g_autoptr (TfFrameRow) row = tf_ledger_frame (fill->ledger, frame, NULL);
+  gboolean refused = row != NULL && row->refusal != NULL;
+  g_autofree char *message = refused ? g_strdup_printf ("%s: %s", path, row->refusal) : NULL;
+  report (fill, path, refused ? TF_INTAKE_REFUSED : TF_INTAKE_THERE, frame, 0, message);
+}
+
 /* The header was read. A frame that the ledger knows, at whatever path, or that is refused ends
  * here. */
 static gboolean
@@ -85,7 +95,7 @@ take_looked (Fill *fill, TfJob *job, gboolean *again, GError **error)
                                       job->info, job->noise_gauss, error);
   if (frame == 0)
     return FALSE;
-  if (refused && known == 0)
+  if (refused)
     report_refused (fill, job, frame);
   else
     report (fill, job->path, TF_INTAKE_THERE, frame, 0, NULL);
@@ -141,7 +151,7 @@ start_one (Fill *fill, const char *path)
   if (known != 0 && fill->shared.params->spec.hdu == 0 && fill->shared.params->spec.plane <= 1
       && is_complete (fill, known))
     {
-      report (fill, path, TF_INTAKE_THERE, known, 0, NULL);
+      report_known (fill, path, known);
       return FALSE;
     }
   send (fill, tf_job_new (path), JOB_LOOK);

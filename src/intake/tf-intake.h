@@ -19,7 +19,7 @@ typedef enum
 {
   TF_INTAKE_ADDED,
   TF_INTAKE_THERE,    /* unchanged, nothing done */
-  TF_INTAKE_REFUSED,  /* recorded with its reason */
+  TF_INTAKE_REFUSED,  /* recorded with its reason, now or before */
   TF_INTAKE_FAILED,   /* could not be read: nothing recorded */
 } TfIntakeOutcome;
 

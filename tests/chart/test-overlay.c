@@ -362,6 +362,59 @@ empty_and_broken_input_does_no_harm (void)
   g_assert_cmpint (tf_overlay_hit (&none, area, 200, 200), ==, -1);
 }
 
+/* -- lines of no outline --------------------------------------------------------------------- */
+
+/* Lengths of ink and of gaps along a horizontal line, pixels, first run of ink first. */
+static guint
+runs_along (cairo_surface_t *surface, int y, int *runs, guint most)
+{
+  const guint32 *row = (const guint32 *)(gconstpointer)(cairo_image_surface_get_data (surface)
+                                                        + y * cairo_image_surface_get_stride (surface));
+  guint n = 0;
+  int length = 0;
+  gboolean ink = FALSE;
+  for (int x = 0; x < SIDE && n < most; x++)
+    {
+      gboolean now = (row[x] >> 8 & 255) > 100;
+      if (now != ink && (ink || length > 0 || now))
+        {
+          if (length > 0 && (n > 0 || ink))
+            runs[n++] = length;
+          length = 0;
+        }
+      ink = now;
+      length++;
+    }
+  return n;
+}
+
+/* No two kinds of line have the same dashes, so that none rests on its colour. */
+static void
+test_line_dashes (void)
+{
+  int runs[TF_N_LINE_KINDS][6];
+  for (int kind = 0; kind < TF_N_LINE_KINDS; kind++)
+    {
+      TfVertex points[] = { { 40, 0 }, { 160, 0 } };
+      TfOverlayLine line = { (TfLineKind)kind, points, G_N_ELEMENTS (points) };
+      TfOverlay overlay = overlay_of (on_map, NULL, 0);
+      overlay.lines = &line;
+      overlay.n_lines = 1;
+      overlay.on_dark = TRUE;
+      TfChartStyle style = tf_chart_style (TRUE, TRUE, 12);
+      cairo_surface_t *surface = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, SIDE, SIDE);
+      cairo_t *cr = cairo_create (surface);
+      tf_overlay_draw (cr, &overlay, &style, area);
+      cairo_destroy (cr);
+      cairo_surface_flush (surface);
+      g_assert_cmpuint (runs_along (surface, SIDE / 2, runs[kind], 6), ==, 6);
+      cairo_surface_destroy (surface);
+    }
+  for (int a = 0; a < TF_N_LINE_KINDS; a++)
+    for (int b = a + 1; b < TF_N_LINE_KINDS; b++)
+      g_assert_cmpint (abs (runs[a][0] - runs[b][0]) + abs (runs[a][2] - runs[b][2]), >, 0);
+}
+
 void
 add_overlay_tests (void)
 {
@@ -386,4 +439,5 @@ add_overlay_tests (void)
   g_test_add_func ("/chart/overlay/the-graticule-has-its-lines", the_graticule_has_its_lines);
   g_test_add_func ("/chart/overlay/empty-and-broken-input-does-no-harm",
                    empty_and_broken_input_does_no_harm);
+  g_test_add_func ("/chart/overlay/kinds-of-line-differ-by-their-dashes", test_line_dashes);
 }
