@@ -90,7 +90,7 @@ tf_session_get_chosen_dot (TfSession *self)
   for (guint k = 0; k < self->points->len; k++)
     {
       const TfPoint *point = &g_array_index (self->points, TfPoint, k);
-      if (point->mark == row->mark && point->hint == (gint8)row->is_hint)
+      if (point->mark == row->mark && point->hint == (gint8)row->is_hint && !point->outside)
         return (gint64)k + 1;
     }
   return 0;

@@ -12,7 +12,8 @@
 
 /* -- digests of machine rows
  * ------------------------------------------------------------------------- */
-const char *const tf_digest_tables[] = { "frame", "measure", "hint", "complexity", NULL };
+const char *const tf_digest_tables[]
+    = { "frame", "measure", "hint", "complexity", "outside", "outside_row", NULL };
 
 /* All that never changes in a row. */
 static char *
@@ -27,6 +28,13 @@ digest_columns (const char *table)
   if (strcmp (table, "complexity") == 0)
     return g_strdup ("cid, measure, method, program, given, mu, r_mx, strong_gradient_length_mm, "
                      "gradient_weighted_gauss, flux_near_mx, strong_pieces, delta_candidate");
+  if (strcmp (table, "outside") == 0)
+    return g_strdup ("cid, name, checksum, format, source, licence, about, columns, linking, "
+                     "program, n_rows, n_left");
+  if (strcmp (table, "outside_row") == 0)
+    return g_strdup ("cid, outside, ordinal, place, grp, region, passage, time, year, flat, "
+                     "hinted, leading, leading_sure, lat_deg, axis_tilt_deg, flux_unsigned_mx, "
+                     "cmd_deg, mu, separation_deg, imbalance");
   g_autofree char *measured = tf_measure_dup_columns ("");
   return g_strconcat ("cid, frame, method, program, time_text, year, cautions, ", measured, NULL);
 }

@@ -141,6 +141,7 @@ tf_ledger_gather (TfLedger *ledger, TfLedger *part, guint *n_frames, guint *n_hi
   gboolean ok = frames != NULL;
   for (guint k = 0; ok && k < frames->len; k++)
     ok = gather_frame (ledger, part, g_ptr_array_index (frames, k), &new_frames, &new_hints, error);
+  ok = ok && tf_outside_gather (ledger, part, error);
   gint64 acts = tf_value (part, NULL, 0,
                           "SELECT count (*) FROM act WHERE kind NOT IN ('begin', 'person')", "");
   if (ok && acts > 0 && said != NULL)

@@ -2,7 +2,8 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* The narrow table behind the wings: one row for every live mark and every open hint. A hint is
+/* The narrow table behind the wings: one row for every live mark, every open hint and every row of
+ * an outside table (hint: 0, 1, 2). A hint is
  * open when it is of the newest rule run on its frame, no live mark came from it and nobody
  * dropped it. */
 
@@ -30,7 +31,28 @@
   " AND NOT EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id)"                                  \
   " AND NOT EXISTS (SELECT 1 FROM mark m WHERE m.hint = h.id AND m.live = 1)"
 
-const char tf_point_all_sql[] = MARK_POINTS " UNION ALL " HINT_POINTS;
+/* Rows of outside tables: no frame; the region is the first row's local key, apart from marks'. What
+ * the source calls a hint is none of them. */
+#define OUTSIDE_POINTS                                                                             \
+  "SELECT 2, o.id, 0, 1073741824 + o.id - o.ordinal + o.grp, o.time, o.year, o.lat_deg, "          \
+  "o.flux_unsigned_mx, o.axis_tilt_deg, o.mu, o.cmd_deg, o.separation_deg, o.imbalance, "          \
+  "o.leading, o.leading_sure, 0, "                                                                 \
+  "coalesce (o.leading_lat_deg * o.following_lat_deg < 0, 0), -1 FROM outside_row o "              \
+  "WHERE o.hinted = 0"
+
+const char tf_point_all_sql[]
+    = MARK_POINTS " UNION ALL " HINT_POINTS " UNION ALL " OUTSIDE_POINTS;
+
+gboolean
+tf_point_refresh_outside (TfLedger *ledger, gint64 outside, GError **error)
+{
+  return tf_run (ledger, error,
+                 "DELETE FROM point WHERE hint = 2 AND mark IN (SELECT id FROM outside_row WHERE "
+                 "outside = ?1)",
+                 "i", outside)
+         && tf_run (ledger, error, "INSERT INTO point " OUTSIDE_POINTS " AND o.outside = ?1", "i",
+                    outside);
+}
 
 gboolean
 tf_point_refresh_mark (TfLedger *ledger, gint64 mark, GError **error)
@@ -59,7 +81,8 @@ static void
 read_point (TfPoint *point, sqlite3_stmt *query)
 {
   *point = (TfPoint){
-    .hint = (gint8)sqlite3_column_int (query, 0),
+    .hint = sqlite3_column_int (query, 0) == 1,
+    .outside = sqlite3_column_int (query, 0) == 2,
     .mark = sqlite3_column_int64 (query, 1),
     .frame = sqlite3_column_int64 (query, 2),
     .region = (guint32)sqlite3_column_int64 (query, 3),
@@ -95,6 +118,8 @@ compare_points (gconstpointer a, gconstpointer b)
   int by_time = compare_numbers (p->time.s, q->time.s);
   if (by_time != 0)
     return by_time;
+  if (p->outside != q->outside)
+    return p->outside - q->outside;
   return p->hint != q->hint ? p->hint - q->hint : (p->mark > q->mark) - (p->mark < q->mark);
 }
 

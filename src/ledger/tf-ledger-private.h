@@ -12,12 +12,14 @@
 #include <sodium.h>
 #include <sqlite3.h>
 
+#include "tf-ledger-outside.h"
+#include "tf-ledger-studies.h"
 #include "tf-ledger.h"
 
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION     4
+#define TF_LEDGER_VERSION     5
 #define TF_ID_HEX             32 /* digits of a UUID */
 #define TF_CID_HEX            64 /* digits of a content id or hash */
 
@@ -126,12 +128,28 @@ typedef struct
 } TfAct;
 gboolean tf_project_act (TfLedger *ledger, const TfAct *act, GError **error);
 gboolean tf_act_is_deed (const char *kind); /* can be undone */
+/* The act that speaks for a subject; seq 0 when none stands. */
+gboolean tf_project_current (TfLedger *ledger, const char *subject, gint64 *replica, gint64 *seq,
+                             GError **error);
+
+/* -- tf-ledger-studies.c
+ * --------------------------------------------------------------------------- */
+/* @table: "study" or "edition", which is also the kind of act. */
+gboolean tf_named_put (TfLedger *ledger, const TfAct *act, GError **error);
+gboolean tf_named_project (TfLedger *ledger, const char *table, const char *subject, GError **error);
+
+/* -- tf-ledger-outside.c
+ * --------------------------------------------------------------------------- */
+gboolean tf_outside_gather (TfLedger *ledger, TfLedger *part, GError **error);
+/* Rows of outside tables as TfRow into @rows; @key 0: all. */
+gboolean tf_outside_read_rows (TfLedger *ledger, gint64 key, GPtrArray *rows, GError **error);
 
 /* -- tf-ledger-points.c
  * ---------------------------------------------------------------------------- */
 gboolean tf_point_refresh_mark (TfLedger *ledger, gint64 mark, GError **error);
 gboolean tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error);
 gboolean tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error);
+gboolean tf_point_refresh_outside (TfLedger *ledger, gint64 outside, GError **error);
 extern const char
     tf_point_all_sql[]; /* every point as it should be, in the order of the table's columns */
 

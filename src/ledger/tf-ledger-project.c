@@ -73,6 +73,18 @@ find_current (TfLedger *ledger, const char *subject, Current *current, GError **
   return TRUE;
 }
 
+gboolean
+tf_project_current (TfLedger *ledger, const char *subject, gint64 *replica, gint64 *seq,
+                    GError **error)
+{
+  g_auto (Current) current = { 0 };
+  if (!find_current (ledger, subject, &current, error))
+    return FALSE;
+  *replica = current.replica;
+  *seq = current.seq;
+  return TRUE;
+}
+
 /* An id that stands in a body: exactly @digits hex digits, else NULL. */
 static const char *
 body_id (JsonObject *body, const char *key, gsize digits)
@@ -385,6 +397,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return project_geometry (ledger, subject, body, error);
   if (strcmp (kind, "divide") == 0)
     return project_divide (ledger, subject, body, error);
+  if (strcmp (kind, "study") == 0 || strcmp (kind, "edition") == 0)
+    return tf_named_project (ledger, kind, subject, error);
   return project_note (ledger, subject, body, error);
 }
 
@@ -430,8 +444,8 @@ put_deed (TfLedger *ledger, const TfAct *act, GError **error)
 gboolean
 tf_act_is_deed (const char *kind)
 {
-  static const char *const kinds[] = { "keep", "withdraw", "drop", "class",
-                                       "note", "resolve", "geometry", "divide", NULL };
+  static const char *const kinds[] = { "keep",     "withdraw", "drop",  "class",   "note", "resolve",
+                                       "geometry", "divide",   "study", "edition", NULL };
   return g_strv_contains (kinds, kind);
 }
 
@@ -449,6 +463,9 @@ tf_project_act (TfLedger *ledger, const TfAct *act, GError **error)
     return FALSE;
   if (strcmp (act->kind, "shift") == 0)
     return project_shift (ledger, act, error);
+  if ((strcmp (act->kind, "study") == 0 || strcmp (act->kind, "edition") == 0)
+      && !tf_named_put (ledger, act, error))
+    return FALSE;
   if (strcmp (act->kind, "undo") == 0 || strcmp (act->kind, "redo") == 0)
     return project_undo (ledger, act, error);
   return !tf_act_is_deed (act->kind)

@@ -138,9 +138,12 @@ static const char *const compared[][2] = {
   { "shift", "SELECT uid, time, clock, " PERSON " FROM @.shift t" },
   { "geometry", "SELECT frame, text, clock, " PERSON " FROM @.geometry t" },
   { "divide", "SELECT study, cycle, hemisphere, points, shown, clock, " PERSON " FROM @.divide t" },
-  { "point", "SELECT hint, CASE hint WHEN 1 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id "
+  { "study", "SELECT uid, name, version, checksum, text, replica, seq, live FROM @.study" },
+  { "edition", "SELECT uid, name, study, study_version, checksum, text, replica, seq, live FROM "
+               "@.edition" },
+  { "point", "SELECT hint, CASE WHEN hint > 0 THEN mark ELSE (SELECT x.uid FROM @.mark x WHERE x.id "
              "= t.mark) END, frame, "
-             "CASE hint WHEN 1 THEN region ELSE " REGION
+             "CASE WHEN hint > 0 THEN region ELSE " REGION
              " END, time, year, lat_deg, flux_mx, tilt_deg, mu, cmd_deg,"
              " separation_deg, imbalance, leading, leading_sure, unipolar, straddles, "
              "witnesses_differ FROM @.point t" },

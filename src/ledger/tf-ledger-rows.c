@@ -118,6 +118,7 @@ tf_row_free (TfRow *row)
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     g_free (texts[k]);
   g_clear_pointer (&row->outline, tf_outline_unref);
+  g_clear_pointer (&row->outside, tf_outside_row_free);
   tf_measure_clear (&row->measure);
   g_free (row);
 }
@@ -160,6 +161,8 @@ compare_rows (gconstpointer a, gconstpointer b)
     return s < t ? -1 : 1;
   if (p->is_hint != q->is_hint)
     return p->is_hint ? 1 : -1;
+  if ((p->outside != NULL) != (q->outside != NULL))
+    return p->outside != NULL ? 1 : -1;
   return (p->mark > q->mark) - (p->mark < q->mark);
 }
 
@@ -184,6 +187,8 @@ tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error)
   if (query->hints
       && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame,
                      !query->no_outlines, query->complexity, rows, error))
+    return NULL;
+  if (query->outside && query->frame == 0 && !tf_outside_read_rows (ledger, 0, rows, error))
     return NULL;
   g_ptr_array_sort (rows, compare_rows);
   return g_steal_pointer (&rows);

@@ -14,7 +14,7 @@
  *       |  \--< frame_over        later   this frame supersedes that one (newer processing)
  *     instrument                  later   origin of frames; its scale is a deed (`scale`), offered by `pair`
  *     complexity >-- measure, method      figures of one measured outline, given or not, by one complexity method
- *     outside, outside_row        later   tables brought in: source, checksum, row; content id of source and row number
+ *     outside --< outside_row             tables brought in: source, licence, checksum, map; content id of source and row number
  *     orientation                 later   what the orientation witness said of two frames
  *
  *   DEEDS: one act each, in the log, for ever.
@@ -45,7 +45,8 @@
  *     passage rows are machine rows of `follow` (content id of rotation law, vantage, first mark); hand-made links are acts
  *     scale         instrument             later   instrument.scale
  *     divide        study, minimum, hemisphere     divide         points as drawn, whether polarity was in sight; none = computed again
- *     sieve, study  study                  later   sieve, study, edition (named, checksummed state of a study)
+ *     study         study (of its name)    study           a version of a study, sieve included; the last one stands
+ *     edition       study, edition         edition         a named, checksummed state of a study with its figures
  *     case          case                   later   docket_case        what the docket found, its evidence, controls with seed
  *     call          case                   later   who is asked to judge
  *     opinion       case, person           later   opinion            a seal only; the opening is in `opening`
@@ -190,8 +191,22 @@ static const char projection_4[]
       "person INTEGER NOT NULL REFERENCES person (id), clock INTEGER NOT NULL, "
       "PRIMARY KEY (study, cycle, hemisphere)) STRICT, WITHOUT ROWID;";
 
+/* Every version of a study and every edition is a row; live: it stands. */
+static const char projection_5[] =
+    "CREATE TABLE study (id INTEGER PRIMARY KEY, uid BLOB NOT NULL, name TEXT NOT NULL, "
+    "version INTEGER NOT NULL, checksum BLOB NOT NULL, text TEXT NOT NULL, "
+    "replica INTEGER NOT NULL, seq INTEGER NOT NULL, live INTEGER NOT NULL, "
+    "UNIQUE (replica, seq)) STRICT;"
+    "CREATE INDEX study_uid ON study (uid, live);"
+    "CREATE TABLE edition (id INTEGER PRIMARY KEY, uid BLOB NOT NULL, name TEXT NOT NULL, "
+    "study TEXT NOT NULL, study_version INTEGER NOT NULL, checksum BLOB NOT NULL, "
+    "text TEXT NOT NULL, replica INTEGER NOT NULL, seq INTEGER NOT NULL, live INTEGER NOT NULL, "
+    "UNIQUE (replica, seq)) STRICT;"
+    "CREATE INDEX edition_name ON edition (name, live);";
+
 const char *const tf_ledger_projections[]
-    = { projection_1, projection_2, projection_3, projection_4, NULL };
+    = { projection_1, projection_2, projection_3, projection_4,
+        projection_5, NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -302,10 +317,38 @@ static const char *const version_3[] = { projection_3, NULL };
 
 static const char *const version_4[] = { projection_4, NULL };
 
+/* -- version 5: outside tables, studies --------------------------------------------------------- */
+/* Of an outside row what studies and the wings need stands in columns; all it has stands in flat
+ * (JSON of flat columns). grp: ordinal of the first row of its region. Ids of one table's rows run
+ * on. */
+#define OUTSIDE_SQL                                                                                \
+  "CREATE TABLE outside (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, name TEXT NOT NULL, "   \
+  "checksum TEXT NOT NULL, format TEXT NOT NULL, source TEXT NOT NULL, licence TEXT NOT NULL, "    \
+  "about TEXT NOT NULL, columns TEXT NOT NULL, linking TEXT NOT NULL, program TEXT NOT NULL, "     \
+  "n_rows INTEGER NOT NULL, n_left INTEGER NOT NULL, digest BLOB) STRICT;"                         \
+  "CREATE TABLE outside_row (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, "                   \
+  "outside INTEGER NOT NULL REFERENCES outside (id), ordinal INTEGER NOT NULL, "                   \
+  "place INTEGER NOT NULL, grp INTEGER NOT NULL, region TEXT NOT NULL, passage TEXT NOT NULL, "    \
+  "time REAL, year REAL, flat TEXT NOT NULL, hinted INTEGER NOT NULL, leading INTEGER NOT NULL, "  \
+  "leading_sure INTEGER NOT NULL, lat_deg REAL, leading_lat_deg REAL, following_lat_deg REAL, "    \
+  "cmd_deg REAL, mu REAL, axis_tilt_deg REAL, axis_bearing_deg REAL, tilt_sigma_deg REAL, "        \
+  "separation_deg REAL, separation_sigma_deg REAL, flux_unsigned_mx REAL, imbalance REAL, "        \
+  "compactness REAL, axial_dipole_gauss REAL, carrington_lon_deg REAL, "                           \
+  "stonyhurst_lon_deg REAL, floor_gauss REAL, digest BLOB, UNIQUE (outside, ordinal)) STRICT;"     \
+  "CREATE VIEW outside_rows AS SELECT s.name AS table_name, s.source AS source, "                  \
+  "s.licence AS licence, o.place AS source_row, o.region AS region, o.passage AS passage, "        \
+  "lower (hex (o.cid)) AS mark, 'outside' AS origin, o.year AS time_year, o.lat_deg, o.cmd_deg, "  \
+  "o.mu, o.axis_tilt_deg, o.axis_bearing_deg, o.separation_deg, o.flux_unsigned_mx, "              \
+  "o.imbalance, o.leading AS leading_polarity, o.leading_sure, o.flat AS flat "                    \
+  "FROM outside_row o JOIN outside s ON s.id = o.outside;"
+
+static const char *const version_5[] = { OUTSIDE_SQL, projection_5, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
   { 3, version_3 },
   { 4, version_4 },
+  { 5, version_5 },
   { 0, NULL },
 };

@@ -168,10 +168,32 @@ fail (GError **error, TfLedgerError code, const char *form, const char *path)
   return FALSE;
 }
 
+/* SQLite does not wait for the lock that this needs once, when two make a ledger together. */
+static char *
+dup_wal_mode (TfLedger *ledger, GError **error)
+{
+  gint64 until = g_get_monotonic_time () + 1000 * (gint64)ledger->busy_ms;
+  for (;;)
+    {
+      GError *problem = NULL;
+      char *mode = tf_text_value (ledger, &problem, "PRAGMA journal_mode = WAL", "");
+      if (!g_error_matches (problem, TF_LEDGER_ERROR, TF_LEDGER_ERROR_BUSY)
+          || g_get_monotonic_time () > until)
+        {
+          if (problem != NULL)
+            g_propagate_error (error, problem);
+          return mode;
+        }
+      g_error_free (problem);
+      g_free (mode);
+      g_usleep (5000);
+    }
+}
+
 static gboolean
 set_pragmas (TfLedger *ledger, GError **error)
 {
-  g_autofree char *mode = tf_text_value (ledger, error, "PRAGMA journal_mode = WAL", "");
+  g_autofree char *mode = dup_wal_mode (ledger, error);
   return mode != NULL && tf_run (ledger, error, "PRAGMA synchronous = FULL", "");
 }
 
@@ -191,6 +213,11 @@ static gboolean
 bring_up (TfLedger *ledger, gint64 application, gint64 version, gboolean create, GError **error)
 {
   gboolean is_new = create && application == 0 && version == 0 && is_empty (ledger);
+  if (create && application == 0 && !is_new)
+    { /* another process may have made it since the stamp was read */
+      application = tf_value (ledger, NULL, 0, "PRAGMA application_id", "");
+      version = tf_value (ledger, NULL, 0, "PRAGMA user_version", "");
+    }
   if (application != TF_LEDGER_APPLICATION && !is_new)
     return fail (error, TF_LEDGER_ERROR_OPEN, _ ("%s is not a ledger; nothing was changed"),
                  ledger->path);

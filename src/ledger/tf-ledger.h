@@ -248,6 +248,7 @@ typedef struct
   char *complexity_method;    /* by which figures were worked out, or refused; NULL: nobody tried */
   char *time_source;
   gboolean simulated;
+  struct _TfOutsideRow *outside; /* of a row that came in a table (tf-ledger-outside.h); NULL: own */
 } TfRow;
 void tf_row_free (TfRow *row);
 
@@ -257,6 +258,7 @@ typedef struct
   gint64 frame;          /* 0: all */
   gboolean judged_hints; /* hints that a person kept or dropped, too */
   gboolean complexity;   /* figures, too */
+  gboolean outside;      /* rows of outside tables, too; their mark is a local key of its own kind */
   gboolean no_outlines;  /* outline is NULL: several times faster where it is not asked for (studies, tables) */
 } TfRowQuery;
 /** tf_ledger_rows: (element-type TfRow) live marks and open hints in time order. */
@@ -273,10 +275,11 @@ typedef struct
   float lat_deg, flux_mx, tilt_deg, mu, cmd_deg, separation_deg;
   gint8 leading;     /* 1, -1, 0 */
   gint8 leading_sure, hint, unipolar, straddles, witnesses_differ;
+  gint8 outside;     /* a row of an outside table: mark is its local key there, frame 0 */
   float imbalance;
   guint32 region;    /* local key, 0 for hints */
 } TfPoint;
-/** tf_ledger_points: (element-type TfPoint) all live marks and open hints, in time order. */
+/** tf_ledger_points: (element-type TfPoint) all live marks, open hints and outside rows, in time order. */
 GArray *tf_ledger_points (TfLedger *ledger, GError **error);
 
 /* -- drafts ---------------------------------------------------------------------------------- */

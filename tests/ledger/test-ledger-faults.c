@@ -181,9 +181,13 @@ static int
 keep_many (Fixture *f)
 {
   TfLedgerHow how = { .create = TRUE, .letter = 'T', .state_dir = f->state };
-  g_autoptr (TfLedger) ledger = tf_ledger_open_how (f->path, &how, NULL);
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfLedger) ledger = tf_ledger_open_how (f->path, &how, &error);
   if (ledger == NULL)
-    return 1;
+    {
+      g_printerr ("# %s\n", error->message);
+      return 1;
+    }
   for (int k = 0; k < EACH; k++)
     keep_one (ledger, k);
   return 0;

@@ -14,5 +14,7 @@ main (int argc, char **argv)
   add_file_tests ();
   add_machine_tests ();
   add_shift_tests ();
+  add_outside_tests ();
+  add_studies_tests ();
   return g_test_run ();
 }

@@ -50,5 +50,7 @@ void add_faults_tests (void);
 void add_file_tests (void);
 void add_machine_tests (void);
 void add_shift_tests (void);
+void add_outside_tests (void);
+void add_studies_tests (void);
 
 #define FIXTURE_TEST(path, func) g_test_add (path, Fixture, NULL, fixture_set_up, func, fixture_tear_down)
