@@ -18,6 +18,8 @@ const TfNoteKind tf_note_kinds_ledger[] = {
   { "check-file", TF_NOTE_STRONG, N_ ("{0}: the file is damaged ({1}); go back to a backup") },
   { "check-machine-row", TF_NOTE_STRONG,
     N_ ("{0}: row {2} of table {1} is not as it was written; fill the frames into a new ledger, or go back to a backup") },
+  { "check-passages", TF_NOTE_STRONG,
+    N_ ("{0}: the passages of {1} marks or hints are not those that follow makes of them; run follow again") },
   { "check-points", TF_NOTE_STRONG,
     N_ ("{0}: the points of the wings differ from the marks and hints ({2} missing, {3} that should not be there)") },
   { "check-projection", TF_NOTE_STRONG,

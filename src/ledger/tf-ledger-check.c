@@ -7,6 +7,7 @@
 
 #include "tf-ledger-private.h"
 #include "tf-ledger-check-private.h"
+#include "tf-ledger-follow-private.h"
 
 #include <string.h>
 
@@ -192,7 +193,8 @@ static gboolean
 check_inside (TfLedger *ledger, TfNotes *findings, GError **error)
 {
   gboolean ok = check_file (ledger, findings, error) && check_references (ledger, findings, error)
-                && check_acts (ledger, findings, error) && check_have (ledger, findings, error);
+                && check_acts (ledger, findings, error) && check_have (ledger, findings, error)
+                && tf_follow_check (ledger, findings, error);
   for (guint k = 0; ok && tf_digest_tables[k] != NULL; k++)
     ok = check_machine_rows (ledger, tf_digest_tables[k], findings, error);
   return ok;

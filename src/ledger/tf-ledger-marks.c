@@ -215,6 +215,16 @@ keep_body (const TfMarkDeed *deed, const Keep *keep)
   return body;
 }
 
+/* Until follow has run again a new mark stands where its hint or the mark before it stood. */
+static gboolean
+keep_passage (TfLedger *ledger, gint64 mark, GError **error)
+{
+  return tf_run (ledger, error,
+                 "INSERT OR IGNORE INTO member (hint, mark, passage, time) SELECT 0, m.id, b.passage, b.time FROM mark m JOIN member b ON "
+                 "b.hint = 0 AND b.mark = m.follows OR b.hint = 1 AND b.mark = m.hint WHERE m.id = ?1 ORDER BY b.hint LIMIT 1",
+                 "i", mark);
+}
+
 static gint64
 keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error)
 {
@@ -225,7 +235,8 @@ keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error)
   g_autofree char *subject = tf_subject ('m', k.ids.region, k.ids.frame, k.ids.person, NULL);
   if (!tf_act_append (ledger, "keep", subject, body, error))
     return 0;
-  return tf_value (ledger, error, 0, "SELECT id FROM mark WHERE uid = ?1", "h", k.ids.mark);
+  gint64 mark = tf_value (ledger, error, 0, "SELECT id FROM mark WHERE uid = ?1", "h", k.ids.mark);
+  return mark != 0 && keep_passage (ledger, mark, error) ? mark : 0;
 }
 
 gint64

@@ -336,6 +336,33 @@ project_shift (TfLedger *ledger, const TfAct *act, GError **error)
                  "hidi", uid, person, tf_json_member_number (act->body, "time"), act->clock);
 }
 
+/* -- links and cuts
+ * -------------------------------------------------------------------------------- */
+static const char *
+sight_id (JsonObject *body, const char *key)
+{
+  const char *mark = body_id (body, key, TF_ID_HEX);
+  return mark != NULL ? mark : body_id (body, key, TF_CID_HEX);
+}
+
+static gboolean
+project_tie (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
+{
+  g_auto (Current) current = { 0 };
+  const char *a = sight_id (body, "a"), *b = sight_id (body, "b");
+  if (a == NULL || b == NULL)
+    return damaged (ledger, "link", error);
+  if (!find_current (ledger, subject, &current, error)
+      || !tf_run (ledger, error, "DELETE FROM tie WHERE a = ?1 AND b = ?2", "hh", a, b))
+    return FALSE;
+  if (current.body == NULL)
+    return TRUE;
+  gint64 cut = strcmp (current.kind, "cut") == 0, person = person_key (ledger, current.body);
+  return tf_run (ledger, error,
+                 "INSERT INTO tie (a, b, cut, person, reason, clock) VALUES (?1, ?2, ?3, ?4, ?5, ?6)",
+                 "hhiiti", a, b, cut, person, body_text (current.body, "reason"), current.clock);
+}
+
 static gboolean
 project_geometry (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
 {
@@ -399,6 +426,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return project_divide (ledger, subject, body, error);
   if (strcmp (kind, "study") == 0 || strcmp (kind, "edition") == 0)
     return tf_named_project (ledger, kind, subject, error);
+  if (strcmp (kind, "link") == 0 || strcmp (kind, "cut") == 0)
+    return project_tie (ledger, subject, body, error);
   return project_note (ledger, subject, body, error);
 }
 
@@ -445,7 +474,8 @@ gboolean
 tf_act_is_deed (const char *kind)
 {
   static const char *const kinds[] = { "keep",     "withdraw", "drop",  "class",   "note", "resolve",
-                                       "geometry", "divide",   "study", "edition", NULL };
+                                       "geometry", "divide",   "study", "edition",
+                                       "link",     "cut",      NULL };
   return g_strv_contains (kinds, kind);
 }
 

@@ -135,6 +135,7 @@ static const char *const compared[][2] = {
   { "note", "SELECT text, clock, " PERSON ", " REGION " FROM @.note t" },
   { "resolved", "SELECT text, clock, " PERSON ", " REGION ", (SELECT x.uid FROM @.person x WHERE "
                 "x.id = t.author) FROM @.resolved t" },
+  { "tie", "SELECT a, b, cut, reason, clock, " PERSON " FROM @.tie t" },
   { "shift", "SELECT uid, time, clock, " PERSON " FROM @.shift t" },
   { "geometry", "SELECT frame, text, clock, " PERSON " FROM @.geometry t" },
   { "divide", "SELECT study, cycle, hemisphere, points, shown, clock, " PERSON " FROM @.divide t" },

@@ -9,10 +9,17 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-/* Columns 0 to 20; the measure's follow. Marks and hints give the same ones. */
+/* Columns 0 to 24; the measure's follow. Marks and hints give the same ones. */
 #define COMMON                                                                                     \
   " f.path, f.checksum, t.text, e.program, f.instrument, f.vantage, f.kind, f.time_source, "       \
-  "f.simulated, "
+  "f.simulated, coalesce (v.id, 0), coalesce (v.same, 0), lower (hex (v.cid)), "
+
+/* A mark that follow has not seen stands in the passage of its hint. */
+#define MARK_PASSAGE                                                                               \
+  " LEFT JOIN member b ON b.hint = 0 AND b.mark = m.id LEFT JOIN member c ON c.hint = 1 AND "      \
+  "c.mark = m.hint LEFT JOIN passage v ON v.id = coalesce (b.passage, c.passage)"
+#define HINT_PASSAGE                                                                               \
+  " LEFT JOIN member b ON b.hint = 1 AND b.mark = h.id LEFT JOIN passage v ON v.id = b.passage"
 
 /* One's own note or class, else the newest of anybody's. */
 #define MARK_COLUMNS                                                                               \
@@ -28,7 +35,7 @@
 #define MARK_FROM                                                                                  \
   " FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person JOIN measure e " \
   "ON e.id = m.measure"                                                                            \
-  " JOIN frame f ON f.id = m.frame JOIN method t ON t.id = e.method"
+  " JOIN frame f ON f.id = m.frame JOIN method t ON t.id = e.method" MARK_PASSAGE
 
 #define HINT_COLUMNS                                                                               \
   "h.id, 1, lower (hex (h.cid)), h.frame, 0, '', -1, '', '', '', '', h.unipolar, "                 \
@@ -36,12 +43,12 @@
 
 #define HINT_FROM                                                                                  \
   " FROM hint h JOIN measure e ON e.id = h.measure JOIN frame f ON f.id = h.frame JOIN method t "  \
-  "ON t.id = e.method"
+  "ON t.id = e.method" HINT_PASSAGE
 
 enum
 {
   FIRST_COMMON = 13,
-  FIRST_MEASURED = 22
+  FIRST_MEASURED = 25
 };
 
 static const char *
@@ -81,7 +88,6 @@ read_row (sqlite3_stmt *query, gboolean complexity)
   row->frame = sqlite3_column_int64 (query, 3);
   row->region_key = sqlite3_column_int64 (query, 4);
   row->region = dup_column (query, 5);
-  row->passage = g_strdup (row->is_hint ? "" : row->mark_id);
   row->origin = origin_name (sqlite3_column_int (query, 6));
   row->label = dup_column (query, 7);
   row->note = dup_column (query, 8);
@@ -97,6 +103,10 @@ read_row (sqlite3_stmt *query, gboolean complexity)
   row->kind = tf_kind_name (tf_kind_from_name (tf_column_text (query, FIRST_COMMON + 6)));
   row->time_source = dup_column (query, FIRST_COMMON + 7);
   row->simulated = sqlite3_column_int (query, FIRST_COMMON + 8);
+  row->passage_key = sqlite3_column_int64 (query, FIRST_COMMON + 9);
+  row->same = sqlite3_column_int64 (query, FIRST_COMMON + 10);
+  row->passage = row->passage_key != 0 ? dup_column (query, FIRST_COMMON + 11)
+                                       : g_strdup (row->is_hint ? "" : row->mark_id);
   tf_measure_from_row (&row->measure, query, FIRST_MEASURED);
   int after = FIRST_MEASURED + (int)tf_measure_n_columns ();
   row->complexity_method
@@ -175,22 +185,66 @@ compare_rows (gconstpointer a, gconstpointer b)
   " OR EXISTS (SELECT 1 FROM dropped d WHERE d.hint = h.id) OR EXISTS (SELECT 1 FROM mark m "      \
   "WHERE m.hint = h.id AND m.live))"
 
+/* Of one passage (?1), or of all that are one region with it: both keys are looked up. */
+#define IN_PASSAGES(passages)                                                                      \
+  " WHERE m.live = 1 AND (m.id IN (SELECT y.mark FROM member y WHERE y.hint = 0 AND y.passage "    \
+  "IN (" passages ")) OR m.hint IN (SELECT y.mark FROM member y WHERE y.hint = 1 AND y.passage "   \
+  "IN (" passages ")))"
+#define HINTS_IN_PASSAGES(passages)                                                                \
+  " WHERE h.id IN (SELECT y.mark FROM member y JOIN point q ON q.hint = 1 AND q.mark = y.mark "    \
+  "WHERE y.hint = 1 AND y.passage IN (" passages "))"
+#define ONE_PASSAGE "?1"
+#define SAME_REGION                                                                                \
+  "SELECT w.id FROM passage w WHERE w.same = (SELECT z.same FROM passage z WHERE z.id = ?1)"
+
+static const char *
+choose_where (const TfRowQuery *query, gboolean hints)
+{
+  if (query->passage != 0 && hints)
+    return query->same ? HINTS_IN_PASSAGES (SAME_REGION) : HINTS_IN_PASSAGES (ONE_PASSAGE);
+  if (query->passage != 0)
+    return query->same ? IN_PASSAGES (SAME_REGION) : IN_PASSAGES (ONE_PASSAGE);
+  if (hints)
+    return query->judged_hints ? JUDGED_HINTS : OPEN_HINTS;
+  return " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)";
+}
+
+/* A mark that follow has not seen is of one region with the others of its number. */
+static void
+complete_same (const GPtrArray *rows)
+{
+  g_autoptr (GHashTable) by_region = g_hash_table_new (g_direct_hash, g_direct_equal);
+  gboolean missing = FALSE;
+  for (guint k = 0; k < rows->len; k++)
+    {
+      const TfRow *row = g_ptr_array_index (rows, k);
+      missing = missing || (row->same == 0 && row->region_key != 0);
+      if (row->same != 0 && row->region_key != 0)
+        g_hash_table_insert (by_region, GSIZE_TO_POINTER (row->region_key), GSIZE_TO_POINTER (row->same));
+    }
+  for (guint k = 0; k < rows->len && missing; k++)
+    {
+      TfRow *row = g_ptr_array_index (rows, k);
+      if (row->same == 0 && row->region_key != 0)
+        row->same = (gint64)GPOINTER_TO_SIZE (g_hash_table_lookup (by_region, GSIZE_TO_POINTER (row->region_key)));
+    }
+}
+
 GPtrArray *
 tf_ledger_rows (TfLedger *ledger, const TfRowQuery *query, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && query != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
-  if (query->marks
-      && !read_rows (ledger, FALSE, " WHERE m.live = 1 AND (?1 = 0 OR m.frame = ?1)", query->frame,
-                     !query->no_outlines, query->complexity, rows, error))
-    return NULL;
-  if (query->hints
-      && !read_rows (ledger, TRUE, query->judged_hints ? JUDGED_HINTS : OPEN_HINTS, query->frame,
-                     !query->no_outlines, query->complexity, rows, error))
-    return NULL;
-  if (query->outside && query->frame == 0 && !tf_outside_read_rows (ledger, 0, rows, error))
+  gint64 key = query->passage != 0 ? query->passage : query->frame;
+  for (int hints = 0; hints < 2; hints++)
+    if ((hints ? query->hints : query->marks)
+        && !read_rows (ledger, hints, choose_where (query, hints), key, !query->no_outlines,
+                       query->complexity, rows, error))
+      return NULL;
+  if (query->outside && key == 0 && !tf_outside_read_rows (ledger, 0, rows, error))
     return NULL;
   g_ptr_array_sort (rows, compare_rows);
+  complete_same (rows);
   return g_steal_pointer (&rows);
 }
 

@@ -41,8 +41,7 @@
  *     geometry      frame, person                  geometry           a person's correction of a frame; "" = back to the header
  *     undo, redo    that of the act named          deed
  *     renumber      region                 later   region.number      two replicas with one letter
- *     link, cut     region, region         later   lineage            passages of one region on later rotations
- *     passage rows are machine rows of `follow` (content id of rotation law, vantage, first mark); hand-made links are acts
+ *     link, cut     two sightings          tie     these marks or hints are one region, or are not: in one passage, or on later rotations
  *     scale         instrument             later   instrument.scale
  *     divide        study, minimum, hemisphere     divide         points as drawn, whether polarity was in sight; none = computed again
  *     study         study (of its name)    study           a version of a study, sieve included; the last one stands
@@ -54,7 +53,8 @@
  *     settle        any                    later   names the heads it settles in `after`
  *
  *   LOCAL: setting (ledger id, letter), draft (strokes between keeps), place. They do not travel.
- *   DERIVED: point (the wings), kept in the transaction that changes a mark or hint.
+ *   DERIVED: point (the wings), kept in the transaction that changes a mark or hint; passage with member, linked, tied and
+ *   passage_return, which follow makes from points and ties (content id of method, vantage and first sighting).
  *
  * Several people working apart: each copy of the file writes under its own replica (tf-ledger-replica.c), acts are merged by
  * (replica, seq), machine rows by content id; keys inside a file are local integers and never leave it.
@@ -204,9 +204,15 @@ static const char projection_5[] =
     "UNIQUE (replica, seq)) STRICT;"
     "CREATE INDEX edition_name ON edition (name, live);";
 
+/* What people say of two sightings, by ids of marks and hints; a < b. cut 0: one region; 1: not. */
+static const char projection_6[]
+    = "CREATE TABLE tie (a BLOB NOT NULL, b BLOB NOT NULL, cut INTEGER NOT NULL, "
+      "person INTEGER NOT NULL REFERENCES person (id), reason TEXT NOT NULL, clock INTEGER NOT NULL, "
+      "PRIMARY KEY (a, b)) STRICT, WITHOUT ROWID;";
+
 const char *const tf_ledger_projections[]
     = { projection_1, projection_2, projection_3, projection_4,
-        projection_5, NULL };
+        projection_5, projection_6, NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -246,8 +252,9 @@ const char *const tf_ledger_projections[]
   "e.cautions AS cautions "
 
 /* The two views of the flat columns; @columns and @join: what later versions add. */
-#define MARKS_VIEW_SQL(columns, join)                                                              \
-  "CREATE VIEW marks AS SELECT g.number AS region, lower (hex (m.uid)) AS passage, "               \
+#define MARK_ITSELF "lower (hex (m.uid))"
+#define MARKS_VIEW_SQL(passage, columns, join)                                                     \
+  "CREATE VIEW marks AS SELECT g.number AS region, " passage " AS passage, "                       \
   "lower (hex (m.uid)) AS mark, "                                                                  \
   "CASE m.origin WHEN 0 THEN 'kept as hinted' WHEN 1 THEN 'changed' ELSE 'drawn new' END AS origin, " \
   "m.label AS label," FLAT_SQL " p.name AS person, " FLAT_SQL_2 " coalesce ((SELECT c.class "      \
@@ -257,15 +264,15 @@ const char *const tf_ledger_projections[]
   columns "FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person "         \
   "JOIN measure e ON e.id = m.measure JOIN frame f ON f.id = m.frame "                             \
   "JOIN method t ON t.id = e.method " join "WHERE m.live;"
-#define HINTS_VIEW_SQL(columns, join)                                                              \
-  "CREATE VIEW hints AS SELECT NULL AS region, NULL AS passage, lower (hex (h.cid)) AS mark, "     \
+#define HINTS_VIEW_SQL(passage, columns, join)                                                     \
+  "CREATE VIEW hints AS SELECT NULL AS region, " passage " AS passage, lower (hex (h.cid)) AS mark, " \
   "'hint' AS origin, NULL AS label, " FLAT_SQL " NULL AS person, " FLAT_SQL_2 " NULL"              \
   FLAT_SQL_3 columns "FROM point q JOIN hint h ON h.id = q.mark JOIN measure e ON e.id = h.measure " \
   "JOIN frame f ON f.id = h.frame JOIN method t ON t.id = e.method " join "WHERE q.hint = 1;"
 
 #define VIEW_SQL                                                                                   \
-  MARKS_VIEW_SQL ("", "")                                                                          \
-  HINTS_VIEW_SQL ("", "")                                                                          \
+  MARKS_VIEW_SQL (MARK_ITSELF, "", "")                                                             \
+  HINTS_VIEW_SQL ("NULL", "", "")                                                                  \
   "CREATE VIEW frames AS SELECT f.path AS frame, f.checksum AS frame_checksum, f.hdu AS hdu, "     \
   "f.plane AS plane, f.kind AS kind, f.role AS role, f.time_text AS time, "                        \
   "f.time_source AS time_source, f.instrument AS instrument, f.vantage AS vantage, "               \
@@ -306,8 +313,51 @@ const char *const tf_ledger_projections[]
 
 static const char version_2_views[]
     = "DROP VIEW marks; DROP VIEW hints; "
-    MARKS_VIEW_SQL (COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
-    HINTS_VIEW_SQL (COMPLEXITY_COLUMNS, COMPLEXITY_JOIN);
+    MARKS_VIEW_SQL (MARK_ITSELF, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
+    HINTS_VIEW_SQL ("NULL", COMPLEXITY_COLUMNS, COMPLEXITY_JOIN);
+
+/* -- version 6: passages ------------------------------------------------------------------------
+ * linked, member, passage and passage_return are what follow made, in order of dependence; tied is what it took into
+ * account of people's links and cuts. time: at the Sun. */
+#define PASSAGE_SQL                                                                                \
+  "CREATE TABLE passage (id INTEGER PRIMARY KEY, cid BLOB NOT NULL UNIQUE, "                       \
+  "vantage TEXT NOT NULL, first_time REAL, last_time REAL, first_hint INTEGER NOT NULL, "          \
+  "first_mark INTEGER NOT NULL, last_hint INTEGER NOT NULL, last_mark INTEGER NOT NULL, "          \
+  "n_frames INTEGER NOT NULL, born INTEGER NOT NULL, ended INTEGER NOT NULL, "                     \
+  "split_from INTEGER NOT NULL, merged_into INTEGER NOT NULL, same INTEGER NOT NULL) STRICT;"      \
+  "CREATE INDEX passage_same ON passage (same);"                                                   \
+  "CREATE INDEX passage_time ON passage (last_time);"                                              \
+  "CREATE TABLE member (hint INTEGER NOT NULL, mark INTEGER NOT NULL, "                            \
+  "passage INTEGER NOT NULL, time REAL, PRIMARY KEY (hint, mark)) STRICT, WITHOUT ROWID;"          \
+  "CREATE INDEX member_passage ON member (passage, time);"                                         \
+  "CREATE INDEX member_time ON member (time);"                                                     \
+  "CREATE TABLE linked (a_hint INTEGER NOT NULL, a_mark INTEGER NOT NULL, "                        \
+  "b_hint INTEGER NOT NULL, b_mark INTEGER NOT NULL, kind INTEGER NOT NULL, overlap REAL, "        \
+  "PRIMARY KEY (a_hint, a_mark, b_hint, b_mark, kind)) STRICT, WITHOUT ROWID;"                     \
+  "CREATE INDEX linked_b ON linked (b_hint, b_mark);"                                              \
+  "CREATE TABLE passage_return (earlier INTEGER NOT NULL, later INTEGER NOT NULL, lon_deg REAL, "  \
+  "lat_deg REAL, PRIMARY KEY (earlier, later)) STRICT, WITHOUT ROWID;"                             \
+  "CREATE TABLE tied (a BLOB NOT NULL, b BLOB NOT NULL, cut INTEGER NOT NULL, "                    \
+  "PRIMARY KEY (a, b)) STRICT, WITHOUT ROWID;"
+
+#define MARK_PASSAGE                                                                               \
+  "lower (hex (coalesce ((SELECT q.cid FROM member b JOIN passage q ON q.id = b.passage "          \
+  "WHERE b.hint = 0 AND b.mark = m.id), (SELECT q.cid FROM member b JOIN passage q "               \
+  "ON q.id = b.passage WHERE b.hint = 1 AND b.mark = m.hint), m.uid)))"
+#define HINT_PASSAGE                                                                               \
+  "(SELECT lower (hex (q.cid)) FROM member b JOIN passage q ON q.id = b.passage "                  \
+  "WHERE b.hint = 1 AND b.mark = h.id)"
+
+static const char version_6_views[]
+    = "DROP VIEW marks; DROP VIEW hints; "
+    MARKS_VIEW_SQL (MARK_PASSAGE, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
+    HINTS_VIEW_SQL (HINT_PASSAGE, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
+    "CREATE VIEW passages AS SELECT lower (hex (q.cid)) AS passage, q.vantage AS vantage, "
+    "q.n_frames AS frames, "
+    "(SELECT lower (hex (s.cid)) FROM passage s WHERE s.id = q.same) AS first_passage_of_region, "
+    "CASE q.born WHEN 1 THEN 'on disk' WHEN 2 THEN 'over the limb' WHEN 3 THEN 'far side' "
+    "ELSE 'unknown' END AS born, CASE q.ended WHEN 1 THEN 'on disk' WHEN 2 THEN 'over the limb' "
+    "WHEN 3 THEN 'far side' ELSE 'unknown' END AS ended FROM passage q;";
 
 static const char *const version_1[] = { LOG_SQL MACHINE_SQL, projection_1, LOCAL_SQL VIEW_SQL, NULL };
 
@@ -344,11 +394,14 @@ static const char *const version_4[] = { projection_4, NULL };
 
 static const char *const version_5[] = { OUTSIDE_SQL, projection_5, NULL };
 
+static const char *const version_6[] = { PASSAGE_SQL, projection_6, version_6_views, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
   { 3, version_3 },
   { 4, version_4 },
   { 5, version_5 },
+  { 6, version_6 },
   { 0, NULL },
 };

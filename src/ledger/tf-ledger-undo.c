@@ -15,7 +15,7 @@
 #define DEEDS                                                                                      \
   "FROM deed d JOIN act a ON a.replica = d.replica AND a.seq = d.seq"                              \
   " WHERE d.person = ?1 AND d.replica = ?2 AND a.kind IN ('keep', 'withdraw', 'drop', 'class', "   \
-  "'note', 'resolve', 'geometry', 'divide', 'study', 'edition')"
+  "'note', 'resolve', 'geometry', 'divide', 'study', 'edition', 'link', 'cut')"
 #define LAST_SQL "SELECT d.seq " DEEDS " AND d.undone = 0 ORDER BY d.seq DESC LIMIT 1"
 #define NEXT_SQL "SELECT d.seq " DEEDS " AND d.undone = 1 ORDER BY d.seq LIMIT 1"
 

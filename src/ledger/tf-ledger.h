@@ -236,7 +236,9 @@ typedef struct
   gint64 frame;
   gint64 region_key;    /* 0 for a hint */
   char *region;         /* "T2013-0412"; "" for a hint */
-  char *passage;        /* until passages exist: the mark's own id */
+  char *passage;        /* content id; of a mark that follow has not seen: its own id; of a hint: "" */
+  gint64 passage_key;   /* local key (tf-ledger-follow.h); 0 when follow has not seen it */
+  gint64 same;          /* rows of one region share it, whatever their passages: local key of a passage; 0 with passage_key 0 */
   const char *origin;   /* "hint", "kept as hinted", "changed", "drawn new", "outside": static */
   char *label, *note, *mw_class; /* "" where none */
   char *frame_path, *frame_checksum, *method, *program_version, *person, *instrument, *vantage;
@@ -256,6 +258,8 @@ typedef struct
 {
   gboolean marks, hints; /* which */
   gint64 frame;          /* 0: all */
+  gint64 passage;        /* 0: all; else only its marks and open hints (@frame and @judged_hints have no say) */
+  gboolean same;         /* with @passage: of all passages that are one region with it */
   gboolean judged_hints; /* hints that a person kept or dropped, too */
   gboolean complexity;   /* figures, too */
   gboolean outside;      /* rows of outside tables, too; their mark is a local key of its own kind */

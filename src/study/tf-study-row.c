@@ -10,7 +10,8 @@
 
 enum
 {
-  HINT_CLUSTER = 1u << 31 /* a hint is a region of its own, apart from all numbered ones */
+  HINT_CLUSTER = 1u << 31,   /* a hint in no passage is a region of its own, apart from all numbered ones */
+  PASSAGE_CLUSTER = 1u << 29 /* regions and passages as follow has them, apart from keys of regions and marks */
 };
 
 static gint8
@@ -81,8 +82,10 @@ tf_study_row (const TfRow *row, TfSampleRow *out)
 {
   tf_study_measure_row (&row->measure, out);
   out->origin = origin_of (row);
-  out->region = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->region_key;
-  out->passage = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->mark;
+  guint32 alone = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->mark;
+  guint32 region = row->is_hint ? alone : (guint32)row->region_key;
+  out->region = row->same != 0 ? PASSAGE_CLUSTER + (guint32)row->same : region;
+  out->passage = row->passage_key != 0 ? PASSAGE_CLUSTER + (guint32)row->passage_key : alone;
 }
 
 void

@@ -12,6 +12,7 @@ main (int argc, char **argv)
   add_divides_tests ();
   add_faults_tests ();
   add_file_tests ();
+  add_follow_tests ();
   add_machine_tests ();
   add_shift_tests ();
   add_outside_tests ();

@@ -48,6 +48,7 @@ void add_check_tests (void);
 void add_divides_tests (void);
 void add_faults_tests (void);
 void add_file_tests (void);
+void add_follow_tests (void);
 void add_machine_tests (void);
 void add_shift_tests (void);
 void add_outside_tests (void);
