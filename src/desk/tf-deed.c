@@ -15,6 +15,22 @@ tf_deed_new (TfDeedKind kind, const char *person)
 }
 
 TfDeed *
+tf_deed_new_together (const char *as, const char *person)
+{
+  TfDeed *deed = tf_deed_new (TF_DEED_TOGETHER, person);
+  deed->as = as;
+  deed->parts = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_deed_free);
+  return deed;
+}
+
+void
+tf_deed_add (TfDeed *deed, TfDeed *part)
+{
+  g_return_if_fail (deed->kind == TF_DEED_TOGETHER && part->kind != TF_DEED_TOGETHER);
+  g_ptr_array_add (deed->parts, part);
+}
+
+TfDeed *
 tf_deed_copy (const TfDeed *deed)
 {
   TfDeed *copy = tf_deed_new (deed->kind, deed->person);
@@ -28,6 +44,12 @@ tf_deed_copy (const TfDeed *deed)
     tf_measure_copy (&copy->measure, &deed->measure);
   copy->method = g_strdup (deed->method);
   copy->text = g_strdup (deed->text);
+  copy->as = deed->as;
+  if (deed->kind != TF_DEED_TOGETHER)
+    return copy;
+  copy->parts = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_deed_free);
+  for (guint k = 0; k < deed->parts->len; k++)
+    g_ptr_array_add (copy->parts, tf_deed_copy (deed->parts->pdata[k]));
   return copy;
 }
 
@@ -41,7 +63,8 @@ tf_deed_free (TfDeed *deed)
   tf_measure_clear (&deed->measure);
   g_free (deed->method);
   g_free (deed->text);
-  g_free (deed->what);
+  g_clear_pointer (&deed->parts, g_ptr_array_unref);
+  tf_undone_clear (&deed->undone);
   g_free (deed);
 }
 
@@ -61,6 +84,8 @@ run_keep (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
   return deed->mark != 0;
 }
 
+static gboolean run_together (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error);
+
 static gboolean
 run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 {
@@ -77,15 +102,37 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
     case TF_DEED_CLASS:
       return tf_ledger_set_class (ledger, deed->region, deed->frame, person, deed->text,
                                   "magnetogram", error);
+    case TF_DEED_LABEL:
+      return tf_ledger_set_label (ledger, deed->region, person, deed->text, error);
+    case TF_DEED_EXTERNAL:
+      return tf_ledger_set_external (ledger, deed->region, person, deed->text, error);
     case TF_DEED_UNDO:
-      return tf_ledger_undo (ledger, person, &deed->what, error);
+      return tf_ledger_undo (ledger, person, &deed->undone, error);
     case TF_DEED_REDO:
-      return tf_ledger_redo (ledger, person, &deed->what, error);
+      return tf_ledger_redo (ledger, person, &deed->undone, error);
     case TF_DEED_DRAFT:
       return tf_ledger_set_draft (ledger, deed->frame, person, deed->text, error);
+    case TF_DEED_TOGETHER:
+      return run_together (deed, ledger, person, error);
     default:
       g_return_val_if_reached (FALSE);
     }
+}
+
+static gboolean
+run_together (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
+{
+  gboolean ok = TRUE;
+  if (!tf_ledger_begin_bundle (ledger, deed->as, error))
+    return FALSE;
+  for (guint k = 0; ok && k < deed->parts->len; k++)
+    {
+      TfDeed *part = deed->parts->pdata[k];
+      ok = run_one (part, ledger, person, error);
+      if (deed->mark == 0)
+        deed->mark = part->mark;
+    }
+  return tf_ledger_end_bundle (ledger, ok, ok ? error : NULL) && ok;
 }
 
 gboolean
@@ -108,9 +155,41 @@ tf_deed_name (const TfDeed *deed)
     N_ ("withdrawing the mark"),
     N_ ("the note"),
     N_ ("the class"),
+    N_ ("the label"),
+    N_ ("the external number"),
     N_ ("undoing"),
     N_ ("redoing"),
     N_ ("the draft"),
+    N_ ("several deeds as one"),
   };
   return _ (names[deed->kind]);
+}
+
+const char *
+tf_deed_word (const char *what)
+{
+  static const char *const words[][2] = {
+    { "keep", N_ ("kept") },
+    { "drop", N_ ("hint dropped") },
+    { "withdraw", N_ ("mark withdrawn") },
+    { "class", N_ ("class") },
+    { "note", N_ ("note") },
+    { "label", N_ ("label") },
+    { "external", N_ ("external number") },
+    { "resolve", N_ ("note settled") },
+    { "geometry", N_ ("geometry corrected") },
+    { "divide", N_ ("divide moved") },
+    { "shift", N_ ("shift handed over") },
+    { "undo", N_ ("undone") },
+    { "redo", N_ ("done again") },
+    { "person", N_ ("first deed of this person") },
+    { "begin", N_ ("this copy of the ledger begun") },
+    { "split", N_ ("split in two") },
+    { "join", N_ ("joined") },
+    { "several", N_ ("several at once") },
+  };
+  for (guint k = 0; k < G_N_ELEMENTS (words); k++)
+    if (g_strcmp0 (words[k][0], what) == 0)
+      return _ (words[k][1]);
+  return what;
 }

@@ -18,9 +18,12 @@ typedef enum
   TF_DEED_WITHDRAW, /* follows: the mark */
   TF_DEED_NOTE,     /* region, text */
   TF_DEED_CLASS,    /* region, frame, text */
+  TF_DEED_LABEL,    /* region, text */
+  TF_DEED_EXTERNAL, /* region, text: its number in an official list */
   TF_DEED_UNDO,
   TF_DEED_REDO,
   TF_DEED_DRAFT, /* frame, text; NULL text takes the draft away */
+  TF_DEED_TOGETHER, /* parts, as: several as one, recorded and undone together */
 } TfDeedKind;
 
 typedef struct
@@ -33,13 +36,18 @@ typedef struct
   TfMeasure measure;
   char *method;
   char *text;
+  GPtrArray *parts; /* of TfDeed, the same person's */
+  const char *as;   /* static: "split", "join", "several" */
   /* what came of it */
-  gint64 mark;
-  char *what;
+  gint64 mark; /* together: the first one kept */
+  TfUndone undone;
   gboolean can_undo, can_redo;
 } TfDeed;
 
 TfDeed *tf_deed_new (TfDeedKind kind, const char *person);
+/** tf_deed_new_together: @as: static; parts are added with tf_deed_add (transfer full). */
+TfDeed *tf_deed_new_together (const char *as, const char *person);
+void tf_deed_add (TfDeed *deed, TfDeed *part);
 /** tf_deed_copy: without what came of it. */
 TfDeed *tf_deed_copy (const TfDeed *deed);
 void tf_deed_free (TfDeed *deed);
@@ -47,6 +55,8 @@ void tf_deed_free (TfDeed *deed);
 gboolean tf_deed_run (TfDeed *deed, TfLedger *ledger, GError **error);
 /** tf_deed_name: "keeping the outline": in the current language, for a sentence. */
 const char *tf_deed_name (const TfDeed *deed);
+/** tf_deed_word: of the ledger's own English word for a deed or several as one ("keep", "split"). */
+const char *tf_deed_word (const char *what);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfDeed, tf_deed_free)
 

@@ -257,10 +257,11 @@ tf_session_redo (TfSession *self)
 static void
 say_undone (TfSession *self, const TfDeed *deed)
 {
+  const TfUndone *undone = &deed->undone;
   g_autofree char *text
-      = g_strdup_printf (deed->kind == TF_DEED_UNDO ? _ ("Undone: %s") : _ ("Done again: %s"),
-                         deed->what != NULL ? deed->what : "");
-  tf_session_say (self, text);
+      = g_strdup_printf (deed->kind == TF_DEED_UNDO ? _ ("Undone: %s %s") : _ ("Done again: %s %s"),
+                         tf_deed_word (undone->what), undone->region != NULL ? undone->region : "");
+  tf_session_say (self, g_strchomp (text));
 }
 
 static void

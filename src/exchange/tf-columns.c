@@ -124,6 +124,7 @@ NUMBER (get_strong_pieces, int_or_nan (C.there, (int)C.pieces))
 NUMBER (get_delta_candidate, int_or_nan (C.there, C.delta_candidate != 0))
 NUMBER (get_complexity_mu, r->row->complexity_method != NULL ? C.mu : (double)NAN)
 TEXT (get_complexity_method, r->row->complexity_method)
+TEXT (get_external, r->row->external)
 
 /* -- the table -------------------------------------------------------------------------------- */
 
@@ -143,7 +144,7 @@ const TfColumn tf_columns[] = {
   AS_TEXT ("passage", "meta.id.parent", "disk passage that the mark belongs to", get_passage),
   AS_TEXT ("mark", "meta.id;meta.main", "id of the mark or hint, the same in every ledger", get_mark),
   AS_TEXT ("origin", "meta.code.status", "hint, kept as hinted, changed, drawn new, outside", get_origin),
-  AS_TEXT ("label", "meta.id.assoc", "a person's name or official number of the region", get_label),
+  AS_TEXT ("label", "meta.id.assoc", "a person's own name of the region", get_label),
   AS_TEXT ("frame", "meta.id;meta.file", "name of the frame's file", get_frame),
   AS_TEXT ("frame_checksum", "meta.ref;meta.file", "SHA-256 of the frame's file", get_frame_checksum),
   AS_TEXT ("method", "meta.note;meta.software", "how it was measured, with every option", get_method),
@@ -210,6 +211,8 @@ const TfColumn tf_columns[] = {
            get_delta_candidate),
   AS_NUMBER ("complexity_mu", NONE, "obs.param", "mu at the outline's middle, where complexity was asked for", get_complexity_mu),
   AS_TEXT ("complexity_method", "meta.note;meta.software", "how complexity was worked out, with every option", get_complexity_method),
+  AS_TEXT ("external_number", "meta.id.assoc", "number of the region in an official or other list",
+           get_external),
   { NULL },
 };
 /* clang-format on */

@@ -103,6 +103,18 @@ write_act (TfLedger *ledger, TfAct *act, gint64 wall, const char *body, GError *
                     "ii", act->replica, act->seq);
 }
 
+/* Acts done as one say so in their bodies: which was the first of them, and what they are together. */
+static void
+put_bundle (TfLedger *ledger, TfAct *act)
+{
+  if (ledger->bundle_as == NULL || !tf_act_is_deed (act->kind))
+    return;
+  if (ledger->bundle == 0)
+    ledger->bundle = act->seq;
+  json_object_set_int_member (act->body, "bundle", ledger->bundle);
+  json_object_set_string_member (act->body, "as", ledger->bundle_as);
+}
+
 gboolean
 tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuilder *body,
                GError **error)
@@ -113,7 +125,6 @@ tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuil
   if (ledger->replica == 0 && !tf_replica_begin (ledger, error))
     return FALSE;
   g_autoptr (JsonNode) root = json_builder_get_root (body);
-  g_autofree char *text = tf_json_node_dup_text (root, FALSE);
   TfAct act = {
     .replica = ledger->replica,
     .seq
@@ -124,6 +135,8 @@ tf_act_append (TfLedger *ledger, const char *kind, const char *subject, JsonBuil
     .subject = subject,
     .body = json_node_get_object (root),
   };
+  put_bundle (ledger, &act);
+  g_autofree char *text = tf_json_node_dup_text (root, FALSE);
   return write_act (ledger, &act, ledger->now (ledger->now_data), text, error)
          && tf_project_act (ledger, &act, error);
 }

@@ -346,6 +346,63 @@ tf_ledger_set_note (TfLedger *ledger, gint64 region, gint64 person, const char *
          && end_deed (ledger, set_note (ledger, region, person, text, error), error);
 }
 
+/* A label or an external number: @kind is the act's. */
+static gboolean
+set_fact (TfLedger *ledger, const char *kind, gint64 region, gint64 person, const char *text,
+          GError **error)
+{
+  g_auto (Ids) ids = { .person = person_id (ledger, person, error) };
+  if (ids.person == NULL || (ids.region = region_id (ledger, region, error)) == NULL)
+    return FALSE;
+  g_autoptr (JsonBuilder) body = json_builder_new ();
+  json_builder_begin_object (body);
+  tf_json_string (body, "person", ids.person);
+  tf_json_string (body, "region", ids.region);
+  tf_json_string (body, "text", text);
+  json_builder_end_object (body);
+  g_autofree char *subject = tf_subject (kind[0], ids.region, ids.person, NULL);
+  return tf_act_append (ledger, kind, subject, body, error);
+}
+
+gboolean
+tf_ledger_set_label (TfLedger *ledger, gint64 region, gint64 person, const char *text,
+                     GError **error)
+{
+  g_return_val_if_fail (ledger != NULL && text != NULL, FALSE);
+  return tf_ledger_begin (ledger, error)
+         && end_deed (ledger, set_fact (ledger, "label", region, person, text, error), error);
+}
+
+gboolean
+tf_ledger_set_external (TfLedger *ledger, gint64 region, gint64 person, const char *text,
+                        GError **error)
+{
+  g_return_val_if_fail (ledger != NULL && text != NULL, FALSE);
+  return tf_ledger_begin (ledger, error)
+         && end_deed (ledger, set_fact (ledger, "external", region, person, text, error), error);
+}
+
+/* -- several as one
+ * --------------------------------------------------------------------------------- */
+gboolean
+tf_ledger_begin_bundle (TfLedger *ledger, const char *as, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL && as != NULL && ledger->bundle_as == NULL, FALSE);
+  if (!tf_ledger_begin (ledger, error))
+    return FALSE;
+  ledger->bundle_as = as;
+  ledger->bundle = 0;
+  return TRUE;
+}
+
+gboolean
+tf_ledger_end_bundle (TfLedger *ledger, gboolean ok, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL && ledger->bundle_as != NULL, FALSE);
+  ledger->bundle_as = NULL;
+  return end_deed (ledger, ok, error);
+}
+
 static gboolean
 set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text,
            const char *evidence, GError **error)

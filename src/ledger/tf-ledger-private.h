@@ -19,7 +19,7 @@
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION     6
+#define TF_LEDGER_VERSION     7
 #define TF_ID_HEX             32 /* digits of a UUID */
 #define TF_CID_HEX            64 /* digits of a content id or hash */
 
@@ -39,6 +39,8 @@ struct _TfLedger
   char *replica_id;        /* hex */
   gboolean replica_is_new; /* begun in the transaction in hand */
   char letter;
+  const char *bundle_as; /* acts in hand are done as one, under this word; NULL */
+  gint64 bundle;         /* seq of its first act; 0 before there is one */
 };
 
 /* -- tf-ledger-sql.c
@@ -66,6 +68,7 @@ char *tf_column_dup_hex (sqlite3_stmt *query, int column);
 /* A write: read-only is an error, the lock is waited for. After a failure inside:
  * tf_ledger_rollback. */
 gboolean tf_ledger_begin (TfLedger *ledger, GError **error);
+/* Inside a bundle a write joins the transaction of the bundle, and its commit waits for that. */
 gboolean tf_ledger_commit (TfLedger *ledger, GError **error);
 void tf_ledger_rollback (TfLedger *ledger);
 void tf_ledger_set_error (GError **error, sqlite3 *db, int rc, const char *path);
@@ -117,6 +120,20 @@ char *tf_act_hash (const char *before, const char *replica, gint64 seq, gint64 c
 /* "replica:seq ..." of what an act replaces, sorted. */
 char *tf_act_dup_after (TfLedger *ledger, gint64 replica, gint64 seq, GError **error);
 char *tf_subject (char tag, ...) G_GNUC_NULL_TERMINATED; /* of ids */
+
+/* -- tf-ledger-journal.c
+ * ---------------------------------------------------------------------------- */
+/* What an act says, for people. */
+typedef struct
+{
+  char *what;                /* its kind, or what it is a part of */
+  char *as, *of;             /* as in TfJournalEntry */
+  char *region, *frame_time; /* "" where none */
+  char *text;
+  gint64 frame; /* 0 where none */
+} TfActAbout;
+void tf_act_about (TfLedger *ledger, gint64 replica, gint64 seq, TfActAbout *about);
+void tf_act_about_clear (TfActAbout *about);
 
 /* -- tf-ledger-project.c
  * --------------------------------------------------------------------------- */

@@ -409,6 +409,27 @@ project_divide (TfLedger *ledger, const char *subject, JsonObject *body, GError 
 }
 
 static gboolean
+project_fact (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
+              GError **error)
+{
+  g_auto (Current) current = { 0 };
+  gint64 region = region_key (ledger, body), person = person_key (ledger, body);
+  if (region == 0 || person == 0)
+    return damaged (ledger, kind, error);
+  if (!find_current (ledger, subject, &current, error)
+      || !tf_run (ledger, error,
+                  "DELETE FROM fact WHERE region = ?1 AND person = ?2 AND what = ?3", "iit", region,
+                  person, kind))
+    return FALSE;
+  const char *text = current.body != NULL ? body_text (current.body, "text") : "";
+  return *text == '\0'
+         || tf_run (ledger, error,
+                    "INSERT INTO fact (region, person, what, text, clock) VALUES (?1, ?2, ?3, ?4, "
+                    "?5)",
+                    "iitti", region, person, kind, text, current.clock);
+}
+
+static gboolean
 project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
                  GError **error)
 {
@@ -428,6 +449,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return tf_named_project (ledger, kind, subject, error);
   if (strcmp (kind, "link") == 0 || strcmp (kind, "cut") == 0)
     return project_tie (ledger, subject, body, error);
+  if (strcmp (kind, "label") == 0 || strcmp (kind, "external") == 0)
+    return project_fact (ledger, kind, subject, body, error);
   return project_note (ledger, subject, body, error);
 }
 
@@ -465,17 +488,21 @@ put_deed (TfLedger *ledger, const TfAct *act, GError **error)
                   "UPDATE deed SET undone = 2 WHERE person = ?1 AND replica = ?2 AND undone = 1",
                   "ii", person, act->replica))
     return FALSE;
+  gint64 bundle = tf_json_member_int (act->body, "bundle", act->seq);
+  if (bundle <= 0 || bundle > act->seq)
+    return damaged (ledger, "bundle", error);
   return tf_run (ledger, error,
-                 "INSERT INTO deed (replica, seq, person, undone) VALUES (?1, ?2, ?3, 0)", "iii",
-                 act->replica, act->seq, person);
+                 "INSERT INTO deed (replica, seq, person, undone, bundle) VALUES (?1, ?2, ?3, 0, "
+                 "?4)",
+                 "iiii", act->replica, act->seq, person, bundle);
 }
 
 gboolean
 tf_act_is_deed (const char *kind)
 {
-  static const char *const kinds[] = { "keep",     "withdraw", "drop",  "class",   "note", "resolve",
-                                       "geometry", "divide",   "study", "edition",
-                                       "link",     "cut",      NULL };
+  static const char *const kinds[] = { "keep",    "withdraw", "drop",   "class", "note",
+                                       "resolve", "geometry", "divide", "study", "edition",
+                                       "link",    "cut",      "label",  "external", NULL };
   return g_strv_contains (kinds, kind);
 }
 

@@ -126,12 +126,13 @@ replay (TfLedger *scratch, TfNotes *findings, GError **error)
 #define REGION "(SELECT x.uid FROM @.region x WHERE x.id = t.region)"
 static const char *const compared[][2] = {
   { "person", "SELECT uid, name FROM @.person" },
-  { "deed", "SELECT replica, seq, undone, " PERSON " FROM @.deed t" },
+  { "deed", "SELECT replica, seq, undone, CASE bundle WHEN 0 THEN seq ELSE bundle END, " PERSON " FROM @.deed t" },
   { "region", "SELECT uid, number FROM @.region" },
   { "mark", "SELECT uid, replica, seq, frame, origin, hint, outline, measure, label, live, " PERSON
             ", " REGION ", (SELECT x.uid FROM @.mark x WHERE x.id = t.follows) FROM @.mark t" },
   { "dropped", "SELECT hint, " PERSON " FROM @.dropped t" },
   { "class", "SELECT frame, class, evidence, clock, " PERSON ", " REGION " FROM @.class t" },
+  { "fact", "SELECT what, text, clock, " PERSON ", " REGION " FROM @.fact t" },
   { "note", "SELECT text, clock, " PERSON ", " REGION " FROM @.note t" },
   { "resolved", "SELECT text, clock, " PERSON ", " REGION ", (SELECT x.uid FROM @.person x WHERE "
                 "x.id = t.author) FROM @.resolved t" },

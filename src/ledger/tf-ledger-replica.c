@@ -183,7 +183,7 @@ tf_replica_begin (TfLedger *ledger, GError **error)
 void
 tf_replica_store_state (TfLedger *ledger)
 {
-  if (ledger->replica == 0)
+  if (ledger->replica == 0 || ledger->bundle_as != NULL) /* nothing is committed in a bundle */
     return;
   gint64 seq = tf_value (ledger, NULL, 0, "SELECT upto FROM have WHERE replica = ?1", "i",
                          ledger->replica);

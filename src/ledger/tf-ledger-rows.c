@@ -9,7 +9,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-/* Columns 0 to 24; the measure's follow. Marks and hints give the same ones. */
+/* Columns 0 to 25; the measure's follow. Marks and hints give the same ones. */
 #define COMMON                                                                                     \
   " f.path, f.checksum, t.text, e.program, f.instrument, f.vantage, f.kind, f.time_source, "       \
   "f.simulated, coalesce (v.id, 0), coalesce (v.same, 0), lower (hex (v.cid)), "
@@ -21,16 +21,21 @@
 #define HINT_PASSAGE                                                                               \
   " LEFT JOIN member b ON b.hint = 1 AND b.mark = h.id LEFT JOIN passage v ON v.id = b.passage"
 
-/* One's own note or class, else the newest of anybody's. */
+/* One's own note, class or fact, else the newest of anybody's. */
+#define FACT(what)                                                                                 \
+  " coalesce ((SELECT x.text FROM fact x WHERE x.region = m.region AND x.person = m.person AND "   \
+  "x.what = '" what "'), (SELECT x.text FROM fact x WHERE x.region = m.region AND x.what = '" what \
+  "' ORDER BY x.clock DESC LIMIT 1)"
+
 #define MARK_COLUMNS                                                                               \
-  "m.id, 0, lower (hex (m.uid)), m.frame, m.region, g.number, m.origin, m.label,"                  \
+  "m.id, 0, lower (hex (m.uid)), m.frame, m.region, g.number, m.origin," FACT ("label") ", m.label),"                  \
   " coalesce ((SELECT n.text FROM note n WHERE n.region = m.region AND n.person = m.person),"      \
   " (SELECT n.text FROM note n WHERE n.region = m.region ORDER BY n.clock DESC LIMIT 1), ''),"     \
   " coalesce ((SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame AND "   \
   "c.person = m.person),"                                                                          \
   " (SELECT c.class FROM class c WHERE c.region = m.region AND c.frame = m.frame ORDER BY "        \
   "c.clock DESC LIMIT 1), ''),"                                                                    \
-  " p.name, e.leading = 0, m.outline," COMMON
+  " p.name, e.leading = 0, m.outline," FACT ("external") ", '')," COMMON
 
 #define MARK_FROM                                                                                  \
   " FROM mark m JOIN region g ON g.id = m.region JOIN person p ON p.id = m.person JOIN measure e " \
@@ -39,7 +44,7 @@
 
 #define HINT_COLUMNS                                                                               \
   "h.id, 1, lower (hex (h.cid)), h.frame, 0, '', -1, '', '', '', '', h.unipolar, "                 \
-  "h.outline," COMMON
+  "h.outline, ''," COMMON
 
 #define HINT_FROM                                                                                  \
   " FROM hint h JOIN measure e ON e.id = h.measure JOIN frame f ON f.id = h.frame JOIN method t "  \
@@ -47,8 +52,8 @@
 
 enum
 {
-  FIRST_COMMON = 13,
-  FIRST_MEASURED = 25
+  FIRST_COMMON = 14,
+  FIRST_MEASURED = 26
 };
 
 static const char *
@@ -94,6 +99,7 @@ read_row (sqlite3_stmt *query, gboolean complexity)
   row->mw_class = dup_column (query, 9);
   row->person = dup_column (query, 10);
   row->unipolar = sqlite3_column_int (query, 11);
+  row->external = dup_column (query, 13);
   row->frame_path = dup_column (query, FIRST_COMMON);
   row->frame_checksum = dup_column (query, FIRST_COMMON + 1);
   row->method = dup_column (query, FIRST_COMMON + 2);
@@ -124,7 +130,8 @@ tf_row_free (TfRow *row)
   char *texts[] = { row->mark_id, row->region,          row->passage,    row->label,
                     row->note,    row->mw_class,        row->frame_path, row->frame_checksum,
                     row->method,  row->program_version, row->person,     row->instrument,
-                    row->vantage, row->time_source,     row->complexity_method };
+                    row->vantage, row->time_source,     row->complexity_method,
+                    row->external };
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     g_free (texts[k]);
   g_clear_pointer (&row->outline, tf_outline_unref);

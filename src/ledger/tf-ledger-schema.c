@@ -39,7 +39,10 @@
  *     resolve       region, person (of the note)   resolved       that text of that note is settled; another text is open again
  *     shift         shift                          shift          a desk handed over; what came later is new to the next
  *     geometry      frame, person                  geometry           a person's correction of a frame; "" = back to the header
+ *     label         region, person                 fact              a person's own name of a region
+ *     external      region, person                 fact              its number in somebody else's list
  *     undo, redo    that of the act named          deed
+ *     acts done as one (a split: two marks) name the first of them in their bodies: `bundle`; they are undone as one
  *     renumber      region                 later   region.number      two replicas with one letter
  *     link, cut     two sightings          tie     these marks or hints are one region, or are not: in one passage, or on later rotations
  *     scale         instrument             later   instrument.scale
@@ -210,9 +213,16 @@ static const char projection_6[]
       "person INTEGER NOT NULL REFERENCES person (id), reason TEXT NOT NULL, clock INTEGER NOT NULL, "
       "PRIMARY KEY (a, b)) STRICT, WITHOUT ROWID;";
 
+/* deed.bundle: seq of the first act of those done as one; 0 in deeds older than this version: alone. */
+static const char projection_7[]
+    = "ALTER TABLE deed ADD COLUMN bundle INTEGER NOT NULL DEFAULT 0;"
+      "CREATE TABLE fact (region INTEGER NOT NULL REFERENCES region (id), "
+      "person INTEGER NOT NULL REFERENCES person (id), what TEXT NOT NULL, text TEXT NOT NULL, "
+      "clock INTEGER NOT NULL, PRIMARY KEY (region, person, what)) STRICT, WITHOUT ROWID;";
+
 const char *const tf_ledger_projections[]
     = { projection_1, projection_2, projection_3, projection_4,
-        projection_5, projection_6, NULL };
+        projection_5, projection_6, projection_7, NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -252,12 +262,13 @@ const char *const tf_ledger_projections[]
   "e.cautions AS cautions "
 
 /* The two views of the flat columns; @columns and @join: what later versions add. */
+#define OWN_LABEL   "m.label"
 #define MARK_ITSELF "lower (hex (m.uid))"
-#define MARKS_VIEW_SQL(passage, columns, join)                                                     \
+#define MARKS_VIEW_SQL(passage, label, columns, join)                                              \
   "CREATE VIEW marks AS SELECT g.number AS region, " passage " AS passage, "                       \
   "lower (hex (m.uid)) AS mark, "                                                                  \
   "CASE m.origin WHEN 0 THEN 'kept as hinted' WHEN 1 THEN 'changed' ELSE 'drawn new' END AS origin, " \
-  "m.label AS label," FLAT_SQL " p.name AS person, " FLAT_SQL_2 " coalesce ((SELECT c.class "      \
+  label " AS label," FLAT_SQL " p.name AS person, " FLAT_SQL_2 " coalesce ((SELECT c.class "      \
   "FROM class c WHERE c.region = m.region AND c.frame = m.frame AND c.person = m.person), "        \
   "(SELECT c.class FROM class c "                                                                  \
   "WHERE c.region = m.region AND c.frame = m.frame ORDER BY c.clock DESC LIMIT 1))" FLAT_SQL_3     \
@@ -271,7 +282,7 @@ const char *const tf_ledger_projections[]
   "JOIN frame f ON f.id = h.frame JOIN method t ON t.id = e.method " join "WHERE q.hint = 1;"
 
 #define VIEW_SQL                                                                                   \
-  MARKS_VIEW_SQL (MARK_ITSELF, "", "")                                                             \
+  MARKS_VIEW_SQL (MARK_ITSELF, OWN_LABEL, "", "")                                                  \
   HINTS_VIEW_SQL ("NULL", "", "")                                                                  \
   "CREATE VIEW frames AS SELECT f.path AS frame, f.checksum AS frame_checksum, f.hdu AS hdu, "     \
   "f.plane AS plane, f.kind AS kind, f.role AS role, f.time_text AS time, "                        \
@@ -313,7 +324,7 @@ const char *const tf_ledger_projections[]
 
 static const char version_2_views[]
     = "DROP VIEW marks; DROP VIEW hints; "
-    MARKS_VIEW_SQL (MARK_ITSELF, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
+    MARKS_VIEW_SQL (MARK_ITSELF, OWN_LABEL, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
     HINTS_VIEW_SQL ("NULL", COMPLEXITY_COLUMNS, COMPLEXITY_JOIN);
 
 /* -- version 6: passages ------------------------------------------------------------------------
@@ -350,7 +361,7 @@ static const char version_2_views[]
 
 static const char version_6_views[]
     = "DROP VIEW marks; DROP VIEW hints; "
-    MARKS_VIEW_SQL (MARK_PASSAGE, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
+    MARKS_VIEW_SQL (MARK_PASSAGE, OWN_LABEL, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
     HINTS_VIEW_SQL (HINT_PASSAGE, COMPLEXITY_COLUMNS, COMPLEXITY_JOIN)
     "CREATE VIEW passages AS SELECT lower (hex (q.cid)) AS passage, q.vantage AS vantage, "
     "q.n_frames AS frames, "
@@ -396,6 +407,21 @@ static const char *const version_5[] = { OUTSIDE_SQL, projection_5, NULL };
 
 static const char *const version_6[] = { PASSAGE_SQL, projection_6, version_6_views, NULL };
 
+/* -- version 7: facts about a region, deeds done as one --------------------------------------------- */
+/* One's own fact, else the newest of anybody's. */
+#define FACT_SQL(what)                                                                             \
+  "coalesce ((SELECT z.text FROM fact z WHERE z.region = m.region AND z.person = m.person AND "    \
+  "z.what = '" what "'), (SELECT z.text FROM fact z WHERE z.region = m.region AND z.what = '" what \
+  "' ORDER BY z.clock DESC LIMIT 1)"
+
+static const char version_7_views[]
+    = "DROP VIEW marks; DROP VIEW hints; "
+    MARKS_VIEW_SQL (MARK_PASSAGE, FACT_SQL ("label") ", m.label)",
+                    COMPLEXITY_COLUMNS ", " FACT_SQL ("external") ") AS external_number ", COMPLEXITY_JOIN)
+    HINTS_VIEW_SQL (HINT_PASSAGE, COMPLEXITY_COLUMNS ", NULL AS external_number ", COMPLEXITY_JOIN);
+
+static const char *const version_7[] = { projection_7, version_7_views, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
@@ -403,5 +429,6 @@ const TfMigration tf_ledger_migrations[] = {
   { 4, version_4 },
   { 5, version_5 },
   { 6, version_6 },
+  { 7, version_7 },
   { 0, NULL },
 };

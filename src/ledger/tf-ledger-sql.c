@@ -266,15 +266,21 @@ tf_ledger_begin (TfLedger *ledger, GError **error)
       g_set_error_literal (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_READ_ONLY, why);
       return FALSE;
     }
-  return tf_run (ledger, error, "BEGIN IMMEDIATE", "");
+  if (ledger->bundle_as == NULL)
+    return tf_run (ledger, error, "BEGIN IMMEDIATE", "");
+  if (!sqlite3_get_autocommit (ledger->db))
+    return TRUE;
+  g_set_error_literal (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE,
+                       _ ("what was to be done as one has failed already"));
+  return FALSE;
 }
 
 gboolean
 tf_ledger_commit (TfLedger *ledger, GError **error)
 {
-  if (tf_run (ledger, error, "COMMIT", ""))
+  if (ledger->bundle_as != NULL || tf_run (ledger, error, "COMMIT", ""))
     {
-      ledger->replica_is_new = FALSE;
+      ledger->replica_is_new = ledger->replica_is_new && ledger->bundle_as != NULL;
       return TRUE;
     }
   tf_ledger_rollback (ledger);

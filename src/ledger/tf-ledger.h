@@ -195,9 +195,18 @@ gboolean tf_ledger_drop_hint (TfLedger *ledger, gint64 hint, gint64 person, GErr
 /** tf_ledger_withdraw: a mark is taken back; it stays in the journal. */
 gboolean tf_ledger_withdraw (TfLedger *ledger, gint64 mark, gint64 person, GError **error);
 gboolean tf_ledger_set_note (TfLedger *ledger, gint64 region, gint64 person, const char *text, GError **error);
+/** tf_ledger_set_label: a person's own name of a region; tf_ledger_set_external: its number in an official or other list. "" clears. */
+gboolean tf_ledger_set_label (TfLedger *ledger, gint64 region, gint64 person, const char *text, GError **error);
+gboolean tf_ledger_set_external (TfLedger *ledger, gint64 region, gint64 person, const char *text, GError **error);
 /** tf_ledger_set_class: Mount Wilson class of a region at a time by a person: "β", "βγδ" ...; "" clears. @evidence: "magnetogram", ... */
 gboolean tf_ledger_set_class (TfLedger *ledger, gint64 region, gint64 frame, gint64 person, const char *class_text,
                               const char *evidence, GError **error);
+/** tf_ledger_begin_bundle: the deeds up to tf_ledger_end_bundle are one: all are recorded or none, and undone together. @as: what they
+ * are together, a static English word ("split", "join"). One person's; that person is known already (tf_ledger_person before it). */
+gboolean tf_ledger_begin_bundle (TfLedger *ledger, const char *as, GError **error);
+/** tf_ledger_end_bundle: @ok: FALSE takes all of it back (one of them failed). FALSE when nothing was recorded. */
+gboolean tf_ledger_end_bundle (TfLedger *ledger, gboolean ok, GError **error);
+
 /* -- shifts and notes ------------------------------------------------------------------------- */
 /** TfRegionNote: what one person says of one region now. */
 typedef struct
@@ -220,10 +229,19 @@ gboolean tf_ledger_hand_over (TfLedger *ledger, gint64 person, TfTime time, GErr
  * (transfer full) */
 TfTime tf_ledger_last_shift (TfLedger *ledger, char **person);
 
-/** tf_ledger_undo: undoes the person's last deed of this replica that is not undone (redo: the last undo). The act undone is named in
- * @what ("keep", "drop", ...); STATE when there is none. */
-gboolean tf_ledger_undo (TfLedger *ledger, gint64 person, char **what, GError **error);
-gboolean tf_ledger_redo (TfLedger *ledger, gint64 person, char **what, GError **error);
+/* -- undo ------------------------------------------------------------------------------------- */
+/** TfUndone: what an undo or redo was about. */
+typedef struct
+{
+  char *what;   /* "keep", "drop", "split" ... */
+  char *region; /* number; "" where none */
+  gint64 frame; /* 0 where none */
+} TfUndone;
+void tf_undone_clear (TfUndone *undone);
+/** tf_ledger_undo: undoes the person's last deed of this replica that is not undone (redo: the last undo), and those done as one with it.
+ * @undone: (out) (nullable); STATE when there is none. */
+gboolean tf_ledger_undo (TfLedger *ledger, gint64 person, TfUndone *undone, GError **error);
+gboolean tf_ledger_redo (TfLedger *ledger, gint64 person, TfUndone *undone, GError **error);
 gboolean tf_ledger_can_undo (TfLedger *ledger, gint64 person);
 gboolean tf_ledger_can_redo (TfLedger *ledger, gint64 person);
 
@@ -241,6 +259,7 @@ typedef struct
   gint64 same;          /* rows of one region share it, whatever their passages: local key of a passage; 0 with passage_key 0 */
   const char *origin;   /* "hint", "kept as hinted", "changed", "drawn new", "outside": static */
   char *label, *note, *mw_class; /* "" where none */
+  char *external; /* number in an official or other list; "" */
   char *frame_path, *frame_checksum, *method, *program_version, *person, *instrument, *vantage;
   const char *kind;     /* of the frame, static */
   gboolean unipolar;    /* hints */
@@ -301,10 +320,17 @@ typedef struct
   char *person;
   char *subject;  /* hex ids of what it is about, one after the other */
   gboolean undone;
+  char *as;       /* what it is a part of ("split"); "" when alone */
+  char *of;       /* of an undo or redo: the kind of what it undoes; "" */
+  char *region;   /* number; "" where none */
+  char *frame_time; /* ISO; "" where none */
+  char *text;     /* class, note, label, name ...; "" */
 } TfJournalEntry;
 void tf_journal_entry_free (TfJournalEntry *entry);
 /** tf_ledger_journal: (element-type TfJournalEntry) newest first, at most @limit. */
 GPtrArray *tf_ledger_journal (TfLedger *ledger, guint limit, GError **error);
+/** tf_ledger_journal_of: those about one region alone. */
+GPtrArray *tf_ledger_journal_of (TfLedger *ledger, gint64 region, guint limit, GError **error);
 /** tf_ledger_check: file integrity, foreign keys, schema, chain of acts, projections rebuilt and compared, points. Adds what it
  * finds wrong to @findings. FALSE only when the check itself could not run. */
 gboolean tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error);
@@ -313,5 +339,6 @@ G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLedger, tf_ledger_close)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFrameRow, tf_frame_row_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRegionNote, tf_region_note_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRow, tf_row_free)
+G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfUndone, tf_undone_clear)
 
 G_END_DECLS

@@ -268,10 +268,10 @@ test_undo_all_redo_all (Fixture *f, gconstpointer data)
   g_assert_false (tf_ledger_can_redo (f->ledger, person));
   for (int k = DEEDS - 1; k >= 0; k--)
     {
-      g_autofree char *what = NULL;
+      g_auto (TfUndone) undone = { 0 };
       g_assert_true (tf_ledger_can_undo (f->ledger, person));
-      g_assert_true (tf_ledger_undo (f->ledger, person, &what, &error));
-      g_assert_nonnull (what);
+      g_assert_true (tf_ledger_undo (f->ledger, person, &undone, &error));
+      g_assert_nonnull (undone.what);
       fixture_count (f->ledger, marks[k], open[k]);
     }
   g_assert_false (tf_ledger_can_undo (f->ledger, person));
@@ -382,9 +382,9 @@ test_geometry (Fixture *f, gconstpointer data)
       g_assert_false (tf_correction_is_set (&other));
       fixture_check (f->ledger, "");
     }
-  g_autofree char *what = NULL;
-  g_assert_true (tf_ledger_undo (f->ledger, person, &what, &error));
-  g_assert_cmpstr (what, ==, "geometry");
+  g_auto (TfUndone) undone = { 0 };
+  g_assert_true (tf_ledger_undo (f->ledger, person, &undone, &error));
+  g_assert_cmpstr (undone.what, ==, "geometry");
   g_autoptr (TfFrameRow) row = tf_ledger_frame (f->ledger, frame, &error);
   TfCorrection now = tf_frame_row_get_correction (row, "north");
   g_assert_true (tf_correction_equal (&now, &two));

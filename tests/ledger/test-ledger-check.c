@@ -10,7 +10,7 @@
 
 #include "tf-ledger-divides.h"
 
-/* Two frames with hints, three marks, a drop, a class, a note, one undone deed. */
+/* Two frames with hints, five marks, a drop, a class, a note, a number, two deeds as one, one undone deed. */
 static void
 set_up_full (Fixture *f, gconstpointer data)
 {
@@ -46,6 +46,12 @@ set_up_full (Fixture *f, gconstpointer data)
   double lats[] = { 17, 14 };
   const TfMovedDivide divide = { 24, -1, 2, times, lats, TRUE };
   g_assert_true (tf_ledger_set_divide (f->ledger, "default", &divide, person, &error));
+  g_assert_true (tf_ledger_set_external (f->ledger, fixture_region (f->ledger, one), other, "11861",
+                                         &error));
+  g_assert_true (tf_ledger_begin_bundle (f->ledger, "several", &error));
+  fixture_keep (f->ledger, 2, person, 0, 0, 14);
+  fixture_keep (f->ledger, 2, person, 0, 0, 15);
+  g_assert_true (tf_ledger_end_bundle (f->ledger, TRUE, &error));
   fixture_keep (f->ledger, 2, other, 0, 0, 13);
   g_assert_true (tf_ledger_undo (f->ledger, other, NULL, &error));
   g_assert_no_error (error);
@@ -89,6 +95,8 @@ static const Tampering tamperings[] = {
   { "a-label", "UPDATE mark SET label = 'two' WHERE id = 2", "check-projection" },
   { "an-outline", "UPDATE mark SET outline = replace (outline, '21', '22')", "check-projection" },
   { "a-class", "UPDATE class SET class = 'α'", "check-projection" },
+  { "an-external-number", "UPDATE fact SET text = '11862'", "check-projection" },
+  { "deeds-done-as-one-parted", "UPDATE deed SET bundle = seq", "check-projection" },
   { "a-note-gone", "DELETE FROM note", "check-projection" },
   { "a-note-settled-by-another", "UPDATE resolved SET person = 2", "check-projection" },
   { "a-shift-gone", "DELETE FROM shift", "check-projection" },

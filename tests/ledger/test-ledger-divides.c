@@ -53,9 +53,9 @@ test_undone (Fixture *f, gconstpointer data)
     g_autoptr (GPtrArray) none = tf_ledger_divides (f->ledger, "default", NULL);
     g_assert_cmpuint (none->len, ==, 0);
   }
-  g_autofree char *what = NULL;
-  g_assert_true (tf_ledger_undo (f->ledger, north, &what, NULL));
-  g_assert_cmpstr (what, ==, "divide");
+  g_auto (TfUndone) undone = { 0 };
+  g_assert_true (tf_ledger_undo (f->ledger, north, &undone, NULL));
+  g_assert_cmpstr (undone.what, ==, "divide");
   {
     g_autoptr (GPtrArray) again = tf_ledger_divides (f->ledger, "default", NULL);
     g_assert_cmpuint (only (again)->n, ==, 3);

@@ -208,7 +208,7 @@ static const char flat_columns[]
       "flux_unsigned_mx flux_positive_mx "
       "flux_negative_mx imbalance magnetic_area_msh class axial_dipole_gauss floor_gauss "
       "floor_kind cautions r_schrijver_mx strong_gradient_length_mm gradient_weighted_length_gauss "
-      "flux_near_line_mx strong_pieces delta_candidate complexity_mu";
+      "flux_near_line_mx strong_pieces delta_candidate complexity_mu external_number";
 
 static char *
 query_text (Fixture *f, const char *sql)

@@ -17,5 +17,6 @@ main (int argc, char **argv)
   add_shift_tests ();
   add_outside_tests ();
   add_studies_tests ();
+  add_together_tests ();
   return g_test_run ();
 }

@@ -53,5 +53,6 @@ void add_machine_tests (void);
 void add_shift_tests (void);
 void add_outside_tests (void);
 void add_studies_tests (void);
+void add_together_tests (void);
 
 #define FIXTURE_TEST(path, func) g_test_add (path, Fixture, NULL, fixture_set_up, func, fixture_tear_down)
