@@ -257,9 +257,9 @@ test_cut_and_undone (Fixture *f, gconstpointer data)
   follow (f->ledger, &sum);
   g_assert_cmpuint (sum.passages, ==, 4);
   fixture_check (f->ledger, "");
-  g_autofree char *what = NULL;
-  g_assert_true (tf_ledger_undo (f->ledger, person, &what, &error));
-  g_assert_cmpstr (what, ==, "cut");
+  g_auto (TfUndone) undone = { 0 };
+  g_assert_true (tf_ledger_undo (f->ledger, person, &undone, &error));
+  g_assert_cmpstr (undone.what, ==, "cut");
   follow (f->ledger, &sum);
   g_assert_cmpuint (sum.passages, ==, 3);
   g_assert_true (tf_ledger_redo (f->ledger, person, NULL, &error));
