@@ -321,15 +321,40 @@ sigma_at (const double sigma[RINGS], double mu, double edge)
   return sigma[k] + (at - k) * (sigma[k + 1] - sigma[k]);
 }
 
-static void
-fill_levels (TfHintGrid *g, const TfHintParams *p)
+/* What white noise of the pixels alone leaves in the smoothed field at @mu. */
+static double
+white_noise (const TfFrame *frame, const TfHintParams *p, double scale, double mu)
 {
-  double sigma[RINGS];
+  const TfGeometry *g = tf_frame_get_geometry (frame);
+  double pixel_mm = tf_geometry_scale_arcsec (g) * TF_ARCSEC * (g->distance_mm - g->radius_mm);
+  double radial = tf_frame_get_info (frame)->field == TF_FIELD_RADIAL ? 1.0 : mu;
+  return scale * tf_frame_noise_at (frame, mu) / radial * pixel_mm / sqrt (4.0 * TF_PI * mu) / p->smooth_mm;
+}
+
+/* The scatter of the smoothed field is network and pixel noise. A level must clear the network's long tail by more than it must clear
+ * noise, which is Gaussian: what noise explains beyond half of the scatter brings the level down to noise-sigma. Without this a
+ * coarse or noisy frame would lose faint poles that a better frame of the same Sun shows. */
+static void
+fill_lows (const TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, double scale, double low[RINGS])
+{
+  fill_rings (g, low);
+  for (guint r = 0; r < RINGS; r++)
+    {
+      double white = white_noise (frame, p, scale, g->edge_mu + (r + 0.5) * (1.0 - g->edge_mu) / RINGS) / low[r];
+      double noise = CLAMP (2.0 * white * white - 1.0, 0.0, 1.0);
+      low[r] *= p->low_sigma + noise * (p->noise_sigma - p->low_sigma);
+    }
+}
+
+static void
+fill_levels (TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, double scale)
+{
+  double lows[RINGS];
   gsize there = 0, above = 0;
-  fill_rings (g, sigma);
+  fill_lows (g, p, frame, scale, lows);
   for (gsize k = 0; k < (gsize)g->n * g->n; k++)
     {
-      double low = MAX (p->low_sigma * sigma_at (sigma, g->mu[k], g->edge_mu), p->low_gauss);
+      double low = MAX (sigma_at (lows, g->mu[k], g->edge_mu), p->low_gauss);
       g->low[k] = (float)(isnan (low) ? p->low_gauss : low);
       g->high[k] = (float)(g->low[k] * p->high_sigma / p->low_sigma);
       there += isfinite (g->field[k]);
@@ -411,7 +436,7 @@ tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale
   TfWork whole = { .workers = work != NULL ? work->workers : NULL };
   tf_bands_run (&whole, 3 * TF_BAND_ROWS, smooth_part, &smoothing);
   divide (g, flux, area);
-  fill_levels (g, params);
+  fill_levels (g, params, frame, scale);
   return g;
 }
 

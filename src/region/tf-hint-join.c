@@ -61,8 +61,8 @@ centre_distance (const TfHintCluster *a, const TfHintCluster *b, double radius_m
   return radius_mm * angle_between (p, q);
 }
 
-static TfHintCluster
-sum_of (const TfHintCluster *a, const TfHintCluster *b)
+TfHintCluster
+tf_hint_sum (const TfHintCluster *a, const TfHintCluster *b)
 {
   TfHintCluster sum = *a;
   for (guint sign = 0; sign < 2; sign++)
@@ -89,23 +89,23 @@ is_nest (const TfHintCluster *a, const TfHintCluster *b, const TfHintParams *p)
          && MIN (ta, tb) >= p->nest_small * MAX (ta, tb);
 }
 
-static double
-score_pair (const TfHintPieces *pieces, const TfHintPair *pair)
+double
+tf_hint_score (const TfHintPieces *pieces, const TfHintCluster *a, const TfHintCluster *b, double gap_mm)
 {
-  const TfHintCluster *a = cluster_at (pieces, pair->a), *b = cluster_at (pieces, pair->b);
   const TfHintParams *p = pieces->params;
   double radius = pieces->grid->radius_mm, ta = tf_hint_total (a), tb = tf_hint_total (b);
-  TfHintCluster sum = sum_of (a, b);
+  TfHintCluster sum = tf_hint_sum (a, b);
   double length = tf_hint_length (ta + tb, p), distance = centre_distance (a, b, radius);
   if (tf_hint_separation (&sum, radius) > length || distance > p->centres_share * length || is_nest (a, b, p))
     return 0.0;
   double gain = (net (a) + net (b) - net (&sum)) / (2.0 * MIN (ta, tb));
   double near = exp (-(distance / length) * (distance / length));
   if (gain >= p->balance)
-    return gain * exp (-pair->gap_mm / p->gap_mm) * near;
-  double score = p->same_weight * exp (-pair->gap_mm / p->gap_same_mm) * near;
-  const TfHintCluster *larger = ta >= tb ? a : b;
-  gboolean grows = net (&sum) / (ta + tb) > net (larger) / tf_hint_total (larger);
+    return gain * exp (-gap_mm / p->gap_mm) * near;
+  double score = p->same_weight * exp (-gap_mm / p->gap_same_mm) * near;
+  /* Whichever is the larger: of two nearly alike a few per cent of flux must not decide. */
+  double before = MIN (net (a) / ta, net (b) / tb);
+  gboolean grows = net (&sum) / (ta + tb) > before + p->balance;
   return grows && MIN (ta, tb) >= 0.25 * MAX (ta, tb) ? 0.5 * score : score;
 }
 
@@ -114,7 +114,7 @@ static void
 merge (TfHintPieces *pieces, guint a, guint b)
 {
   GArray *pairs = pieces->pairs;
-  *cluster_at (pieces, a) = sum_of (cluster_at (pieces, a), cluster_at (pieces, b));
+  *cluster_at (pieces, a) = tf_hint_sum (cluster_at (pieces, a), cluster_at (pieces, b));
   cluster_at (pieces, b)->into = (int)a;
   for (guint k = pairs->len; k-- > 0;)
     {
@@ -148,7 +148,7 @@ rescore (TfHintPieces *pieces, int only)
     {
       TfHintPair *pair = &g_array_index (pieces->pairs, TfHintPair, k);
       if (only < 0 || pair->a == (guint)only || pair->b == (guint)only)
-        pair->score = score_pair (pieces, pair);
+        pair->score = tf_hint_score (pieces, cluster_at (pieces, pair->a), cluster_at (pieces, pair->b), pair->gap_mm);
     }
 }
 
@@ -182,7 +182,7 @@ leftover_fits (const TfHintPieces *pieces, const TfHintPair *pair)
   gboolean one = tf_hint_weaker (a) < p->tidy_single, two = tf_hint_weaker (b) < p->tidy_single;
   if (one == two || pair->gap_mm > p->tidy_mm)
     return FALSE;
-  TfHintCluster sum = sum_of (a, b);
+  TfHintCluster sum = tf_hint_sum (a, b);
   return tf_hint_weaker (&sum) >= p->tidy_weaker
          && tf_hint_separation (&sum, pieces->grid->radius_mm) <= p->tidy_length * tf_hint_length (tf_hint_total (&sum), p);
 }
@@ -221,5 +221,6 @@ tf_hint_join (TfHintPieces *pieces)
 {
   join_by_score (pieces);
   tidy (pieces, leftover_fits);
+  tf_hint_partners (pieces);
   tidy (pieces, same_plage);
 }

@@ -162,7 +162,7 @@ add_cell (TfHintCluster *cluster, const TfHintGrid *g, gsize at)
     cluster->place[sign][k] += flux * unit[k];
 }
 
-/* Hills of kept blobs become clusters; patches too weak are dropped. */
+/* Hills of kept blobs become clusters, the others are faint; patches too weak are dropped. */
 static void
 take_hills (TfHintPieces *pieces, Flood *flood, const guint8 *keep)
 {
@@ -171,20 +171,26 @@ take_hills (TfHintPieces *pieces, Flood *flood, const guint8 *keep)
   guint n = flood->parent->len;
   g_autofree TfHintCluster *sums = g_new0 (TfHintCluster, MAX (n, 1));
   g_autofree gint32 *name = g_new (gint32, MAX (n, 1));
+  g_autofree guint8 *kept = g_new0 (guint8, MAX (n, 1)); /* a hill is kept or faint as a whole: it lies in one blob */
   for (gsize k = 0; k < cells; k++)
-    if (flood->label[k] >= 0 && keep[k])
-      add_cell (&sums[find (flood->parent, flood->label[k])], g, k);
+    if (flood->label[k] >= 0)
+      {
+        gint32 hill = find (flood->parent, flood->label[k]);
+        add_cell (&sums[hill], g, k);
+        kept[hill] = keep[k];
+      }
   for (guint k = 0; k < n; k++)
     {
+      GArray *to = kept[k] ? pieces->clusters : pieces->faint;
       name[k] = -1;
       if (tf_hint_total (&sums[k]) < pieces->params->patch_mx)
         continue;
-      name[k] = (gint32)pieces->clusters->len;
-      sums[k].into = name[k];
-      g_array_append_val (pieces->clusters, sums[k]);
+      sums[k].into = (int)to->len;
+      name[k] = kept[k] ? sums[k].into : -2 - sums[k].into;
+      g_array_append_val (to, sums[k]);
     }
   for (gsize k = 0; k < cells; k++)
-    if (flood->label[k] >= 0 && keep[k])
+    if (flood->label[k] >= 0)
       pieces->piece[k] = name[find (flood->parent, flood->label[k])];
 }
 
@@ -286,6 +292,7 @@ tf_hint_pieces_new (const TfHintGrid *grid, const TfHintParams *params, const Tf
   pieces->nearest = g_new (gint32, cells);
   pieces->distance = g_new (float, cells);
   pieces->clusters = g_array_new (FALSE, TRUE, sizeof (TfHintCluster));
+  pieces->faint = g_array_new (FALSE, TRUE, sizeof (TfHintCluster));
   pieces->pairs = g_array_new (FALSE, TRUE, sizeof (TfHintPair));
   memset (pieces->piece, 0xff, cells * sizeof *pieces->piece);
   take_signs (pieces, work);
@@ -305,6 +312,7 @@ tf_hint_pieces_free (TfHintPieces *pieces)
   g_free (pieces->nearest);
   g_free (pieces->distance);
   g_array_unref (pieces->clusters);
+  g_array_unref (pieces->faint);
   g_array_unref (pieces->pairs);
   g_free (pieces);
 }

@@ -47,10 +47,11 @@ typedef struct
 {
   const TfHintGrid *grid;
   const TfHintParams *params;
-  gint32 *piece;    /* of each cell: index of its cluster, or -1 */
+  gint32 *piece;    /* of each cell: index of its cluster, or -1; -2 - k: in the k-th faint hill */
   gint32 *nearest;  /* of each cell: the nearest piece, or -1 */
   float *distance;  /* Mm to it */
   GArray *clusters; /* TfHintCluster */
+  GArray *faint;    /* TfHintCluster: hills that nowhere reach the high level */
   GArray *pairs;    /* TfHintPair */
 } TfHintPieces;
 
@@ -77,12 +78,19 @@ void tf_hint_nearest (const gint32 *label, guint width, guint height, gint32 *ne
 
 /* tf-hint-join.c */
 void tf_hint_join (TfHintPieces *pieces);
+/** tf_hint_score: of joining two clusters across a gap; 0: never. */
+double tf_hint_score (const TfHintPieces *pieces, const TfHintCluster *a, const TfHintCluster *b, double gap_mm);
+TfHintCluster tf_hint_sum (const TfHintCluster *a, const TfHintCluster *b);
 /** tf_hint_length: longest plausible distance of the poles, Mm. */
 double tf_hint_length (double total_mx, const TfHintParams *params);
 /** tf_hint_separation: of the two poles, Mm; 0 for one-signed ones. */
 double tf_hint_separation (const TfHintCluster *cluster, double radius_mm);
 /** tf_hint_centre: unit vector of the flux's centre. */
 void tf_hint_centre (const TfHintCluster *cluster, double unit[3]);
+
+/* tf-hint-partner.c */
+/** tf_hint_partners: poles alone take their faint partners. */
+void tf_hint_partners (TfHintPieces *pieces);
 
 /* tf-hint-outline.c */
 /** tf_hint_outline: (transfer full) (nullable): of the cluster with root @k. @edge: (out): touches cells without a value. */

@@ -14,7 +14,7 @@
 
 G_BEGIN_DECLS
 
-#define TF_HINT_RULE "plain/2"
+#define TF_HINT_RULE "plain/3"
 
 /** TfHintParams: defaults, units, ranges and what each is for stand in tf_hint_options; no number of the rule is anywhere else. */
 typedef struct
@@ -24,6 +24,7 @@ typedef struct
   double smooth_mm;
   double edge_mu;
   double low_sigma;
+  double noise_sigma;
   double low_gauss;
   double high_sigma;
   double active_share;

@@ -8,6 +8,7 @@
 
 #include "hints-compare.h"
 #include "region-builder.h"
+#include "tf-hint-private.h"
 #include "test-hints.h"
 
 static GPtrArray *
@@ -103,6 +104,54 @@ test_flips (void)
   check_told (hints, 1, "hint-leader-flips");
 }
 
+/* A wide pole that stays below the high level (27 G) everywhere: with a pole that reaches it it makes a bipole; alone, or beside one
+ * that is as faint, it is nothing. */
+static void
+test_partner (void)
+{
+  const BuilderPole poles[] = { { 7.5, 15.0, 0.5, 1e21, 0.0 }, { 2.5, 15.0, 2.4, -1.3e21, 0.0 }, { 7.5, 15.0, 2.4, 1.3e21, 0.0 } };
+  g_autoptr (GPtrArray) both = hints_of (poles, 2, 10.0);
+  g_autoptr (GPtrArray) strong = hints_of (poles, 1, 10.0);
+  g_autoptr (GPtrArray) faint = hints_of (poles + 1, 1, 10.0);
+  g_autoptr (GPtrArray) faint_ones = hints_of (poles + 1, 2, 10.0);
+  g_assert_cmpuint (both->len, ==, 1);
+  const TfHint *hint = g_ptr_array_index (both, 0);
+  g_assert_false (hint->unipolar);
+  g_assert_cmpint (hint->measure.leading_polarity, ==, 1);
+  tf_check_between ("distance of its poles, Mm", hint->measure.separation_mm, 45.0, 70.0);
+  g_assert_cmpuint (strong->len, ==, 0);
+  g_assert_cmpuint (faint->len, ==, 0);
+  g_assert_cmpuint (faint_ones->len, ==, 0);
+}
+
+static TfHintCluster
+cluster_of (double lon, double positive, double negative)
+{
+  TfHintCluster cluster = { .flux = { positive, negative } };
+  for (guint sign = 0; sign < 2; sign++)
+    {
+      tf_sphere_unit (lon + sign, 20.0, cluster.place[sign]);
+      for (guint k = 0; k < 3; k++)
+        cluster.place[sign][k] *= cluster.flux[sign];
+    }
+  return cluster;
+}
+
+/* Two clusters of one flux and unlike imbalance: which of them is the larger by one per cent must not decide what becomes of them. */
+static void
+test_even (void)
+{
+  TfHintParams params;
+  tf_hint_params_init (&params);
+  const TfHintGrid grid = { .radius_mm = 695.7 };
+  const TfHintPieces pieces = { .grid = &grid, .params = &params };
+  TfHintCluster a = cluster_of (0.0, 4.6e21, 1.4e21), b = cluster_of (5.0, 5.3e21, 0.7e21);
+  TfHintCluster more_a = cluster_of (0.0, 1.01 * 4.6e21, 1.01 * 1.4e21), more_b = cluster_of (5.0, 1.01 * 5.3e21, 1.01 * 0.7e21);
+  double one = tf_hint_score (&pieces, &more_a, &b, 4.0), two = tf_hint_score (&pieces, &a, &more_b, 4.0);
+  tf_check_between ("score", one, 0.05, 1.0);
+  tf_check_near ("the other the larger", two / one, 1.0, 0.02);
+}
+
 static void
 test_maps (void)
 {
@@ -151,6 +200,8 @@ add_hint_built_tests (void)
   g_test_add_func ("/region/hint/a-long-region-is-told", test_long);
   g_test_add_func ("/region/hint/a-one-sided-region-is-told", test_one_sided);
   g_test_add_func ("/region/hint/a-leader-that-flips-is-told", test_flips);
+  g_test_add_func ("/region/hint/a-pole-finds-its-faint-partner", test_partner);
+  g_test_add_func ("/region/hint/the-larger-by-a-hair-does-not-decide", test_even);
   g_test_add_func ("/region/hint/maps-are-refused-in-words", test_maps);
   g_test_add_func ("/region/hint/every-number-of-the-rule-is-an-option", test_options);
 }
