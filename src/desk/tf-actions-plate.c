@@ -1,13 +1,14 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* Commands of the plate: what lies over the picture. */
+/* Commands of the plate: what lies over the picture, a position as text, the picture as a file. */
 
 #include "tf-window-private.h"
 
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-plate-shot.h"
 #include "tf-preferences.h"
 
 static TfSession *
@@ -70,18 +71,98 @@ add_overlays (TfWindow *self)
     }
 }
 
+/* -- a position and the picture -------------------------------------------------------------- */
+
+#define ACTION(name) static void name (GSimpleAction *action, GVariant *value, gpointer window)
+
+/* Of the point under the pointer, else of the middle. */
+ACTION (copy_position)
+{
+  TfSession *session = session_of (window);
+  const TfView *view = tf_session_get_view (session);
+  double x, y;
+  if (!tf_session_get_pointer (session, &x, &y))
+    {
+      x = view->width / 2;
+      y = view->height / 2;
+    }
+  g_autofree char *text = tf_plate_dup_position (session, x, y);
+  if (text != NULL)
+    gdk_clipboard_set_text (gtk_widget_get_clipboard (GTK_WIDGET (window)), text);
+  tf_window_say (window, text != NULL ? text : _ ("That point is off the Sun."));
+}
+
+static void
+picture_saved (GObject *source, GAsyncResult *result, gpointer data)
+{
+  g_autofree char *path = data;
+  g_autoptr (GError) error = NULL;
+  gboolean good = tf_plate_shot_save_finish (result, &error);
+  g_autofree char *text
+      = good ? g_strdup_printf (_ ("The picture is saved as %s."), path) : g_strdup (error->message);
+  g_signal_emit_by_name (source, "message", text);
+}
+
+static void
+save_picture_to (TfSession *session, const char *path)
+{
+  if (tf_session_get_frame (session) != NULL)
+    tf_plate_shot_save (session, path, picture_saved, g_strdup (path));
+}
+
+static void
+picture_chosen (GtkNativeDialog *dialog, int response, gpointer window)
+{
+  g_autoptr (GFile) file = gtk_file_chooser_get_file (GTK_FILE_CHOOSER (dialog));
+  g_autofree char *path = file != NULL ? g_file_get_path (file) : NULL;
+  if (response == GTK_RESPONSE_ACCEPT && path != NULL)
+    save_picture_to (session_of (window), path);
+  g_object_unref (dialog);
+}
+
+ACTION (save_picture)
+{
+  TfSession *session = session_of (window);
+  if (tf_session_get_frame (session) == NULL)
+    return;
+  g_autofree char *name = tf_plate_shot_dup_name (session);
+  GtkFileChooserNative *chooser = gtk_file_chooser_native_new (
+      _ ("Save the picture: PNG, SVG or PDF by its ending"), GTK_WINDOW (window),
+      GTK_FILE_CHOOSER_ACTION_SAVE, _ ("_Save"), _ ("_Cancel"));
+  gtk_native_dialog_set_modal (GTK_NATIVE_DIALOG (chooser), TRUE);
+  gtk_file_chooser_set_current_name (GTK_FILE_CHOOSER (chooser), name);
+  g_signal_connect_object (chooser, "response", G_CALLBACK (picture_chosen), window, 0);
+  gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));
+}
+
+ACTION (save_picture_as)
+{
+  save_picture_to (session_of (window), g_variant_get_string (value, NULL));
+}
+
+static const GActionEntry entries[] = {
+  { "copy-position", copy_position, NULL, NULL, NULL },
+  { "save-picture", save_picture, NULL, NULL, NULL },
+  { "save-picture-as", save_picture_as, "s", NULL, NULL },
+};
+
 /* -- together -------------------------------------------------------------------------------- */
 
 void
 tf_window_add_plate_actions (TfWindow *self)
 {
   add_overlays (self);
+  g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
 }
 
 void
 tf_window_update_plate_actions (TfWindow *self)
 {
   TfSession *session = tf_window_get_session (self);
+  for (guint k = 0; k < G_N_ELEMENTS (entries); k++)
+    g_simple_action_set_enabled (
+        G_SIMPLE_ACTION (g_action_map_lookup_action (G_ACTION_MAP (self), entries[k].name)),
+        tf_session_get_frame (session) != NULL);
   for (guint part = 0; part < TF_N_OVERLAYS; part++)
     {
       g_autofree char *name

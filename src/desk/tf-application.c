@@ -32,6 +32,8 @@ static const struct
   { "win.look::disk", { "<Alt>1" } },
   { "win.look::unrolled", { "<Alt>2" } },
   { "win.look::close", { "<Alt>3" } },
+  { "win.copy-position", { "<Control><Shift>c" } },
+  { "win.save-picture", { "<Control><Shift>s" } },
   { "win.show-hints", { "<Control>h" } },
   { "win.refresh", { "F5" } },
   { "win.show-help-overlay", { "<Control>question", "F1" } },

@@ -53,116 +53,6 @@ tf_plate_draw_picture (TfPlate *self, int width, int height)
 
 /* -- the overlay ----------------------------------------------------------------------------- */
 
-typedef struct
-{
-  const TfView *view;
-  const TfGeometry *geometry;
-  double shift; /* of the area against the view */
-} Projector;
-
-static gboolean
-project (double lon_deg, double lat_deg, double *x, double *y, gpointer data)
-{
-  const Projector *p = data;
-  if (!tf_view_from_sun (p->view, p->geometry, lon_deg, lat_deg, x, y))
-    return FALSE;
-  *x += p->shift;
-  *y += p->shift;
-  return TRUE;
-}
-
-static void
-set_poles (TfOverlayItem *item, const TfMeasure *m)
-{
-  gboolean two = m != NULL && m->leading_polarity != 0;
-  item->positive[0] = two ? m->positive.carrington_lon_deg : NAN;
-  item->positive[1] = two ? m->positive.lat_deg : NAN;
-  item->negative[0] = two ? m->negative.carrington_lon_deg : NAN;
-  item->negative[1] = two ? m->negative.lat_deg : NAN;
-}
-
-static GArray *
-collect_items (TfPlate *self)
-{
-  GArray *items = g_array_new (FALSE, TRUE, sizeof (TfOverlayItem));
-  GListModel *list = tf_session_get_regions (self->session);
-  TfOutline *draft = tf_session_get_draft (self->session);
-  TfRegionItem *chosen = tf_session_get_region (self->session);
-  guint n = g_list_model_get_n_items (list);
-  for (guint k = 0; k < n; k++)
-    {
-      g_autoptr (TfRegionItem) region = g_list_model_get_item (list, k);
-      const TfRow *row = tf_region_item_get_row (region);
-      TfOverlayItem item = { .outline = row->outline,
-                             .stroke = row->is_hint ? TF_STROKE_HINT : TF_STROKE_MARK,
-                             .chosen = region == chosen && draft == NULL,
-                             .label = tf_region_item_get_label (region),
-                             .verdict = (int)tf_region_item_get_verdict (region).kind };
-      set_poles (&item, &row->measure);
-      g_array_append_val (items, item);
-    }
-  if (draft != NULL)
-    {
-      TfOverlayItem item = { .outline = draft,
-                             .stroke = TF_STROKE_DRAFT,
-                             .chosen = TRUE,
-                             .label = _ ("draft"),
-                             .verdict = (int)tf_session_get_verdict (self->session).kind };
-      set_poles (&item, tf_session_get_measure (self->session));
-      g_array_append_val (items, item);
-    }
-  return items;
-}
-
-static void
-set_limb (TfOverlay *overlay, const Projector *p)
-{
-  double x, y;
-  overlay->limb_rx = NAN;
-  if (p->view->look != TF_LOOK_DISK || tf_geometry_is_map (p->geometry)
-      || !tf_geometry_disk_centre (p->geometry, &x, &y)
-      || !tf_view_from_pixel (p->view, p->geometry, x, y, &overlay->limb_x, &overlay->limb_y))
-    return;
-  overlay->limb_x += p->shift;
-  overlay->limb_y += p->shift;
-  overlay->limb_rx = overlay->limb_ry = tf_geometry_disk_radius (p->geometry) * p->view->zoom;
-}
-
-static void
-add_ghosts (TfPlate *self, GArray *items)
-{
-  const GPtrArray *ghosts = tf_session_get_ghosts (self->session);
-  for (guint k = 0; ghosts != NULL && k < ghosts->len; k++)
-    {
-      const TfGhost *ghost = g_ptr_array_index (ghosts, k);
-      TfOverlayItem item = { .outline = ghost->outline,
-                             .stroke = TF_STROKE_GHOST,
-                             .label = ghost->label,
-                             .verdict = -1 };
-      set_poles (&item, NULL);
-      g_array_append_val (items, item);
-    }
-}
-
-static TfOverlay
-overlay_for (TfPlate *self, Projector *p, GArray *items)
-{
-  TfSession *session = self->session;
-  TfOverlay overlay = { .project = project,
-                        .data = p,
-                        .central_carrington_deg = tf_geometry_central_carrington (p->geometry),
-                        .step_deg = 10,
-                        .graticule = tf_session_get_overlay (session, TF_OVERLAY_GRATICULE),
-                        .outlines = tf_session_get_overlay (session, TF_OVERLAY_OUTLINES),
-                        .axes = tf_session_get_overlay (session, TF_OVERLAY_AXES),
-                        .on_dark = TRUE };
-  overlay.labels = TRUE; /* of the outlines that are drawn */
-  overlay.items = (const TfOverlayItem *)(gconstpointer)items->data;
-  overlay.n_items = items->len;
-  set_limb (&overlay, p);
-  return overlay;
-}
-
 static TfChartStyle
 overlay_style (TfPlate *self)
 {
@@ -247,17 +137,12 @@ tf_plate_draw_overlay (TfPlate *self, int width, int height)
   self->overlay_view = *tf_session_get_view (self->session);
   self->overlay = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, (int)full_width * scale,
                                               (int)full_height * scale);
-  Projector p = { &self->overlay_view, tf_frame_get_geometry (frame), TF_PLATE_MARGIN };
-  g_autoptr (GArray) items = collect_items (self);
-  add_ghosts (self, items);
-  TfOverlay overlay = overlay_for (self, &p, items);
-  g_autoptr (GArray) lines = tf_session_dup_lines (self->session);
-  overlay.lines = (const TfOverlayLine *)(gconstpointer)lines->data;
-  overlay.n_lines = lines->len;
+  g_auto (TfPlateOverlay) over = { 0 };
+  tf_plate_overlay_collect (&over, self->session, &self->overlay_view, TF_PLATE_MARGIN);
   TfChartStyle style = overlay_style (self);
   cairo_t *cr = cairo_create (self->overlay);
   cairo_scale (cr, scale, scale);
-  tf_overlay_draw (cr, &overlay, &style, (TfArea){ 0, 0, full_width, full_height });
+  tf_overlay_draw (cr, &over.overlay, &style, (TfArea){ 0, 0, full_width, full_height });
   cairo_destroy (cr);
   self->overlay_stale = FALSE;
 }
@@ -312,11 +197,14 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
     draw_cross (self, cr);
   if (n == 0 || frame == NULL)
     return;
-  Projector p = { tf_session_get_view (self->session), tf_frame_get_geometry (frame), 0 };
+  g_auto (TfPlateOverlay) over = { 0 };
+  tf_plate_overlay_init (&over, tf_session_get_view (self->session),
+                         tf_frame_get_geometry (frame), 0);
   g_autofree Point *points = g_new (Point, (gsize)n + 1);
   guint seen = 0;
   for (guint k = 0; k < n; k++)
-    if (project (line[k].lon_deg, line[k].lat_deg, &points[seen][0], &points[seen][1], &p))
+    if (over.overlay.project (line[k].lon_deg, line[k].lat_deg, &points[seen][0], &points[seen][1],
+                              over.overlay.data))
       seen++;
   if (self->pointer_in && tf_session_get_tool (self->session) == TF_TOOL_POLYGON)
     {
@@ -324,19 +212,14 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
       points[seen++][1] = self->pointer_y;
     }
   TfOverlayItem item = { .stroke = TF_STROKE_DRAFT, .chosen = TRUE, .verdict = -1 };
-  set_poles (&item, tf_session_get_measure (self->session));
-  TfOverlay overlay = { .project = project,
-                        .data = &p,
-                        .central_carrington_deg = NAN,
-                        .axes = TRUE,
-                        .items = &item,
-                        .n_items = 1,
-                        .limb_rx = NAN,
-                        .draft = (const Point *)points,
-                        .n_draft = seen,
-                        .on_dark = TRUE };
+  tf_plate_overlay_set_poles (&item, tf_session_get_measure (self->session));
+  over.overlay.axes = TRUE;
+  over.overlay.items = &item;
+  over.overlay.n_items = 1;
+  over.overlay.draft = (const Point *)points;
+  over.overlay.n_draft = seen;
   TfChartStyle style = overlay_style (self);
-  tf_overlay_draw (cr, &overlay, &style, (TfArea){ 0, 0, width, height });
+  tf_overlay_draw (cr, &over.overlay, &style, (TfArea){ 0, 0, width, height });
 }
 
 TfRegionItem *
@@ -346,12 +229,12 @@ tf_plate_item_at (TfPlate *self, double x, double y)
   if (frame == NULL)
     return NULL;
   const TfView *view = tf_session_get_view (self->session);
-  Projector p = { view, tf_frame_get_geometry (frame), 0 };
-  g_autoptr (GArray) items = collect_items (self);
   GListModel *list = tf_session_get_regions (self->session);
-  TfOverlay overlay = overlay_for (self, &p, items);
-  overlay.n_items = g_list_model_get_n_items (list); /* the draft is not chosen by a click */
-  int hit = tf_overlay_hit (&overlay, (TfArea){ 0, 0, view->width, view->height }, x, y);
+  g_auto (TfPlateOverlay) over = { 0 };
+  tf_plate_overlay_collect (&over, self->session, view, 0);
+  /* neither the draft nor a ghost is chosen by a click: they stand after the regions */
+  over.overlay.n_items = g_list_model_get_n_items (list);
+  int hit = tf_overlay_hit (&over.overlay, (TfArea){ 0, 0, view->width, view->height }, x, y);
   if (hit < 0)
     return NULL;
   g_autoptr (TfRegionItem) item = g_list_model_get_item (list, (guint)hit);

@@ -3,7 +3,7 @@
  */
 #pragma once
 
-#include "tf-overlay.h"
+#include "tf-plate-overlay.h"
 #include "tf-plate.h"
 
 G_BEGIN_DECLS
@@ -29,6 +29,8 @@ struct _TfPlate
   gboolean moved; /* the drag in hand went further than a click */
   double last_x, last_y;
   guint tick;
+  GtkWidget *menu;    /* made when it is first opened */
+  gboolean menu_open; /* the pointer counts as where it was opened */
   guint settle; /* the overlay is only stretched while zooming; made anew when that rests */
 };
 
@@ -48,6 +50,9 @@ void tf_plate_place_overlay (TfPlate *plate, double *dx, double *dy, double *str
 TfRegionItem *tf_plate_item_at (TfPlate *plate, double x, double y);
 char *tf_plate_dup_description (TfPlate *plate);
 void tf_plate_add_tools (TfPlate *plate);
+void tf_plate_class_add_menu (GtkWidgetClass *klass);
+void tf_plate_add_menu (TfPlate *plate);
+void tf_plate_place_menu (TfPlate *plate);
 void tf_plate_update_readout (TfPlate *plate);
 
 G_END_DECLS

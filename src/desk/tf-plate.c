@@ -65,7 +65,7 @@ void
 tf_plate_update_readout (TfPlate *self)
 {
   char *text = dup_readout (self);
-  if (self->session != NULL)
+  if (self->session != NULL && !self->menu_open)
     tf_session_set_pointer (self->session, self->pointer_in, self->pointer_x, self->pointer_y);
   if (g_strcmp0 (text, self->readout) == 0)
     {
@@ -229,6 +229,7 @@ size_allocate (GtkWidget *widget, int width, int height, int baseline)
 {
   TfPlate *self = TF_PLATE (widget);
   self->overlay_stale = self->picture_stale = TRUE;
+  tf_plate_place_menu (self);
   if (self->session != NULL)
     tf_session_set_view_size (self->session, width, height);
 }
@@ -247,6 +248,7 @@ dispose (GObject *object)
 {
   TfPlate *self = TF_PLATE (object);
   g_clear_handle_id (&self->settle, g_source_remove);
+  g_clear_pointer (&self->menu, gtk_widget_unparent);
   g_clear_object (&self->session);
   g_clear_pointer (&self->picture, cairo_surface_destroy);
   g_clear_pointer (&self->overlay, cairo_surface_destroy);
@@ -273,6 +275,7 @@ tf_plate_class_init (TfPlateClass *klass)
   g_object_class_install_property (
       object, PROP_READOUT,
       g_param_spec_string ("readout", NULL, NULL, NULL, G_PARAM_READABLE | G_PARAM_STATIC_STRINGS));
+  tf_plate_class_add_menu (widget);
   gtk_widget_class_set_css_name (widget, "plate");
   gtk_widget_class_set_accessible_role (widget, GTK_ACCESSIBLE_ROLE_IMG);
 }
@@ -286,4 +289,5 @@ tf_plate_init (TfPlate *self)
   gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL, _ ("Plate"),
                                   -1);
   tf_plate_add_tools (self);
+  tf_plate_add_menu (self);
 }

@@ -122,6 +122,13 @@ pixels_a_degree (const TfView *view, const TfGeometry *geometry)
   return view->zoom * tf_geometry_disk_radius (geometry) * G_PI / 180;
 }
 
+double
+tf_session_get_pixels_a_degree (TfSession *self)
+{
+  const TfGeometry *geometry = geometry_of (self);
+  return geometry != NULL ? pixels_a_degree (&self->view, geometry) : NAN;
+}
+
 /* Turns: a close look turns about its middle while it moves. */
 static void
 hold (TfView *view, const TfGeometry *geometry, const TfPlace *place, double vx, double vy)

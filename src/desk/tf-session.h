@@ -99,6 +99,8 @@ void tf_session_fit (TfSession *session);
 /** tf_session_set_pointer: where the pointer is over the view, if it is. */
 void tf_session_set_pointer (TfSession *session, gboolean in, double vx, double vy);
 gboolean tf_session_get_pointer (TfSession *session, double *vx, double *vy);
+/** tf_session_get_pixels_a_degree: of the view, in the middle of the disk, on maps along a row. */
+double tf_session_get_pixels_a_degree (TfSession *session);
 /** tf_session_set_look: the point under the pointer stays there. */
 void tf_session_set_look (TfSession *session, TfLook look);
 gboolean tf_session_get_north_up (TfSession *session);

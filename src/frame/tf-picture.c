@@ -51,17 +51,21 @@ mix (guint32 from, guint32 to, double t)
   return colour;
 }
 
+guint32
+tf_paint_colour (const TfPaint *paint, double share)
+{
+  double t = CLAMP (share, -1, 1);
+  guint32 zero = paint->dark ? 0xff15181du : 0xfffbfaf7u;
+  return paint->palette == TF_PALETTE_GREY
+             ? mix (0xff000000u, 0xffffffffu, 0.5 * (t + 1))
+             : mix (zero, t < 0 ? 0xff4b5fd6u : 0xffd98a00u, fabs (t));
+}
+
 static void
 fill_colours (Render *render, const TfPaint *paint)
 {
-  guint32 zero = paint->dark ? 0xff15181du : 0xfffbfaf7u;
   for (guint k = 0; k <= COLOURS; k++)
-    {
-      double t = 2.0 * k / COLOURS - 1; /* -1 to 1 */
-      render->colours[k] = paint->palette == TF_PALETTE_GREY
-                               ? mix (0xff000000u, 0xffffffffu, 0.5 * (t + 1))
-                               : mix (zero, t < 0 ? 0xff4b5fd6u : 0xffd98a00u, fabs (t));
-    }
+    render->colours[k] = tf_paint_colour (paint, 2.0 * k / COLOURS - 1);
 }
 
 /* -- sampling -------------------------------------------------------------------------------- */

@@ -70,6 +70,8 @@ typedef struct
   gboolean dark;  /* amber-indigo: zero is dark or light */
 } TfPaint;
 
+/** tf_paint_colour: of a field of @share (-1 to 1) of the range, ARGB. */
+guint32 tf_paint_colour (const TfPaint *paint, double share);
 /** tf_picture_render: @out: @stride pixels a row, at least view->width; rounded view size.
  * Threads by @work. */
 gboolean tf_picture_render (const TfFrame *frame, const TfView *view, const TfPaint *paint,

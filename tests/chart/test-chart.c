@@ -83,6 +83,7 @@ main (int argc, char **argv)
   add_dial_tests ();
   add_wings_tests ();
   add_overlay_tests ();
+  add_plate_figure_tests ();
   add_laws_chart_tests ();
   return g_test_run ();
 }

@@ -34,4 +34,5 @@ void add_symbol_tests (void);
 void add_dial_tests (void);
 void add_wings_tests (void);
 void add_overlay_tests (void);
+void add_plate_figure_tests (void);
 void add_laws_chart_tests (void);

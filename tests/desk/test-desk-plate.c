@@ -6,9 +6,11 @@
 #include "test-desk.h"
 
 #include <math.h>
+#include <string.h>
 
 #include "tf-check.h"
 #include "tf-overlay.h"
+#include "tf-plate-shot.h"
 
 static gboolean
 is_open (gpointer session)
@@ -158,9 +160,81 @@ ghosts_are_carried (void)
   tf_session_close (session);
 }
 
+/* -- a position and the picture -------------------------------------------------------------- */
+
+/* The middle of the disk is the sub-observer point: B0 and L0. */
+static void
+position_as_text (void)
+{
+  g_autoptr (TfSession) session = looking_at (TF_DEMO_FRAMES "/brindle-20131012-0600.fits");
+  const TfGeometry *g = tf_frame_get_geometry (tf_session_get_frame (session));
+  double cx, cy, x, y;
+  g_assert_true (tf_geometry_disk_centre (g, &cx, &cy));
+  tf_view_from_pixel (tf_session_get_view (session), g, cx, cy, &x, &y);
+  g_autofree char *text = tf_plate_dup_position (session, x, y);
+  g_autofree char *head = g_strdup_printf ("2013-10-12T06:00:00Z  N%.2f  CMD ", g->observer.b0_deg);
+  g_autofree char *carrington
+      = g_strdup_printf ("  Carrington %.2f  mu 1.000  ", g->observer.carrington_lon_deg);
+  g_assert_true (g_str_has_prefix (text, head));
+  g_assert_nonnull (strstr (text, carrington));
+  g_assert_nonnull (strstr (text, " G  pixel "));
+  g_assert_true (g_str_has_suffix (text, "  brindle-20131012-0600.fits"));
+  g_assert_null (tf_plate_dup_position (session, 1, 1));
+  tf_session_close (session);
+}
+
+typedef struct
+{
+  gboolean done, good;
+} Saved;
+
+static void
+saved (GObject *source, GAsyncResult *result, gpointer data)
+{
+  Saved *s = data;
+  s->good = tf_plate_shot_save_finish (result, NULL);
+  s->done = TRUE;
+}
+
+static gboolean
+is_done (gpointer data)
+{
+  return ((Saved *)data)->done;
+}
+
+static void
+picture_as_file (void)
+{
+  static const struct
+  {
+    const char *ending, *head;
+  } forms[] = { { "png", "\211PNG" }, { "svg", "<?xml" }, { "pdf", "%PDF" } };
+  g_autofree char *ledger = test_desk_path ("shot.ledger");
+  g_autoptr (TfSession) session = test_desk_session (ledger);
+  for (guint k = 0; k < G_N_ELEMENTS (forms); k++)
+    {
+      g_autofree char *name = g_strconcat ("shot.", forms[k].ending, NULL),
+                      *path = test_desk_path (name), *bytes = NULL;
+      Saved s = { 0 };
+      tf_session_set_look (session, (TfLook)k);
+      tf_plate_shot_save (session, path, saved, &s);
+      test_desk_wait ("the picture", is_done, &s);
+      g_assert_true (s.good);
+      g_assert_true (g_file_get_contents (path, &bytes, NULL, NULL));
+      g_assert_true (g_str_has_prefix (bytes, forms[k].head));
+    }
+  Saved s = { 0 };
+  tf_plate_shot_save (session, "/no/such/folder/shot.png", saved, &s);
+  test_desk_wait ("the refusal", is_done, &s);
+  g_assert_false (s.good);
+  tf_session_close (session);
+}
+
 void
 test_desk_add_plate (void)
 {
+  g_test_add_func ("/desk/plate/a-position-is-a-line-of-text", position_as_text);
+  g_test_add_func ("/desk/plate/the-picture-is-saved-in-three-forms", picture_as_file);
   g_test_add_func ("/desk/plate/inversion-lines-and-spots-are-found", lines_are_found);
   g_test_add_func ("/desk/plate/ghosts-are-carried-to-the-frame", ghosts_are_carried);
   g_test_add_data_func ("/desk/plate/a-look-at-a-disk-holds-the-point-under-the-pointer",
