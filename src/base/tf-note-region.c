@@ -73,6 +73,8 @@ const TfNoteKind tf_note_kinds_region[] = {
   { "leader-unsure", TF_NOTE_CAUTION,
     N_ ("The leading polarity is not sure: the witnesses differ, or the poles' longitudes differ by less than twice their "
         "uncertainty. Look at the picture, or at a frame nearer central meridian.") },
+  { "measured-elsewhere", TF_NOTE_STRONG,
+    N_ ("These numbers were measured with another geometry of the frame than the one shown: measure it again.") },
   { "near-limb", TF_NOTE_CAUTION,
     N_ ("The region is near the limb (mu {0:.2f}): places and fluxes are less sure. Prefer a frame nearer central meridian.") },
   { "near-limb-strong", TF_NOTE_STRONG,

@@ -87,6 +87,14 @@ run_keep (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 static gboolean run_together (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error);
 
 static gboolean
+run_geometry (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
+{
+  TfCorrection correction;
+  tf_correction_from_text (&correction, deed->text); /* none from "" */
+  return tf_ledger_set_geometry (ledger, deed->frame, person, &correction, error);
+}
+
+static gboolean
 run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 {
   switch (deed->kind)
@@ -114,6 +122,8 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
       return tf_ledger_set_draft (ledger, deed->frame, person, deed->text, error);
     case TF_DEED_TOGETHER:
       return run_together (deed, ledger, person, error);
+    case TF_DEED_GEOMETRY:
+      return run_geometry (deed, ledger, person, error);
     default:
       g_return_val_if_reached (FALSE);
     }
@@ -161,6 +171,7 @@ tf_deed_name (const TfDeed *deed)
     N_ ("redoing"),
     N_ ("the draft"),
     N_ ("several deeds as one"),
+    N_ ("the geometry of the frame"),
   };
   return _ (names[deed->kind]);
 }
@@ -177,6 +188,7 @@ tf_deed_word (const char *what)
     { "label", N_ ("label") },
     { "external", N_ ("external number") },
     { "resolve", N_ ("note settled") },
+    { "geometry", N_ ("geometry corrected") },
     { "geometry", N_ ("geometry corrected") },
     { "divide", N_ ("divide moved") },
     { "shift", N_ ("shift handed over") },

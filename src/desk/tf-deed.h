@@ -24,6 +24,7 @@ typedef enum
   TF_DEED_REDO,
   TF_DEED_DRAFT, /* frame, text; NULL text takes the draft away */
   TF_DEED_TOGETHER, /* parts, as: several as one, recorded and undone together */
+  TF_DEED_GEOMETRY, /* frame, text: a TfCorrection; "" takes it back to the header */
 } TfDeedKind;
 
 typedef struct

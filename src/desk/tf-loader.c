@@ -12,6 +12,7 @@ typedef struct
 {
   char *path;
   TfFrameSpec spec;
+  TfCorrection correction;
   TfFrame *frame;
 } Kept;
 
@@ -34,6 +35,7 @@ typedef struct
   guint64 serial;
   char *path;
   TfFrameSpec spec;
+  TfCorrection correction;
   TfWork work;
 } Request;
 
@@ -65,13 +67,15 @@ request_free (gpointer data)
 }
 
 static Kept *
-find_kept (TfLoader *loader, const char *path, const TfFrameSpec *spec)
+find_kept (TfLoader *loader, const char *path, const TfFrameSpec *spec,
+           const TfCorrection *correction)
 {
   for (GList *l = loader->kept.head; l != NULL; l = l->next)
     {
       Kept *kept = l->data;
       if (g_str_equal (kept->path, path) && kept->spec.hdu == spec->hdu
-          && kept->spec.plane == spec->plane)
+          && kept->spec.plane == spec->plane
+          && tf_correction_equal (&kept->correction, correction))
         return kept;
     }
   return NULL;
@@ -83,6 +87,7 @@ keep (TfLoader *loader, const Request *request, TfFrame *frame)
   Kept *kept = g_new0 (Kept, 1);
   kept->path = g_strdup (request->path);
   kept->spec = request->spec;
+  kept->correction = request->correction;
   kept->frame = tf_frame_ref (frame);
   g_queue_push_head (&loader->kept, kept);
   while (loader->kept.length > N_KEPT)
@@ -94,9 +99,14 @@ open_in_thread (GTask *task, gpointer source, gpointer data, GCancellable *cance
 {
   Request *request = data;
   GError *error = NULL;
-  TfFrame *frame = tf_frame_open (request->path, &request->spec, &request->work, &error);
+  g_autoptr (TfFrame) frame
+      = tf_frame_open (request->path, &request->spec, &request->work, &error);
+  /* what cannot be corrected is shown as its header has it */
+  TfFrame *seen
+      = frame != NULL ? tf_frame_corrected (frame, &request->correction, &request->work) : NULL;
   if (frame != NULL)
-    g_task_return_pointer (task, frame, (GDestroyNotify)tf_frame_unref);
+    g_task_return_pointer (task, seen != NULL ? seen : g_steal_pointer (&frame),
+                           (GDestroyNotify)tf_frame_unref);
   else
     g_task_return_error (task, error);
 }
@@ -150,12 +160,14 @@ tf_loader_cancel (TfLoader *loader)
 }
 
 static Request *
-request_new (TfLoader *loader, const char *path, const TfFrameSpec *spec)
+request_new (TfLoader *loader, const char *path, const TfFrameSpec *spec,
+             const TfCorrection *correction)
 {
   Request *request = g_new0 (Request, 1);
   request->serial = loader->serial;
   request->path = g_strdup (path);
   request->spec = *spec;
+  request->correction = *correction;
   request->work.pool = tf_pool_ref (loader->pool);
   request->work.workers = tf_workers_ref (loader->workers);
   request->work.cancel = tf_cancel_ref (loader->cancel);
@@ -163,14 +175,14 @@ request_new (TfLoader *loader, const char *path, const TfFrameSpec *spec)
 }
 
 void
-tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec, TfLoadFunc func,
-                gpointer data)
+tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec,
+                const TfCorrection *correction, TfLoadFunc func, gpointer data)
 {
-  g_return_if_fail (loader != NULL && path != NULL && spec != NULL && func != NULL);
+  g_return_if_fail (loader != NULL && path != NULL && spec != NULL && correction != NULL);
   tf_loader_cancel (loader);
   loader->func = func;
   loader->data = data;
-  Kept *kept = find_kept (loader, path, spec);
+  Kept *kept = find_kept (loader, path, spec, correction);
   if (kept != NULL)
     {
       g_autoptr (TfFrame) frame = tf_frame_ref (kept->frame);
@@ -180,6 +192,6 @@ tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec, TfL
   loader->cancel = tf_cancel_new ();
   loader->refs++;
   g_autoptr (GTask) task = g_task_new (NULL, NULL, opened, loader);
-  g_task_set_task_data (task, request_new (loader, path, spec), request_free);
+  g_task_set_task_data (task, request_new (loader, path, spec, correction), request_free);
   g_task_run_in_thread (task, open_in_thread);
 }

@@ -9,7 +9,7 @@
 
 #include <gio/gio.h>
 
-#include "tf-frame.h"
+#include "tf-correction.h"
 
 G_BEGIN_DECLS
 
@@ -21,9 +21,10 @@ typedef void (*TfLoadFunc) (TfFrame *frame, const GError *error, gpointer data);
 
 TfLoader *tf_loader_new (TfPool *pool);
 void tf_loader_free (TfLoader *loader);
-/** tf_loader_open: @func may be called before this returns, when the frame is still open. */
-void tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec, TfLoadFunc func,
-                     gpointer data);
+/** tf_loader_open: @func may be called before this returns, when the frame is still open.
+ * @correction: of its geometry; none: as the header has it */
+void tf_loader_open (TfLoader *loader, const char *path, const TfFrameSpec *spec,
+                     const TfCorrection *correction, TfLoadFunc func, gpointer data);
 void tf_loader_cancel (TfLoader *loader);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLoader, tf_loader_free)

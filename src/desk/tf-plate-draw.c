@@ -184,6 +184,46 @@ draw_cross (TfPlate *self, cairo_t *cr)
     }
 }
 
+/* -- a geometry that is being tried ---------------------------------------------------------- */
+
+gboolean
+tf_plate_has_preview (TfPlate *self)
+{
+  TfCorrection c = tf_session_get_preview (self->session);
+  return tf_correction_is_set (&c) && tf_session_get_frame (self->session) != NULL
+         && tf_session_get_view (self->session)->look == TF_LOOK_DISK;
+}
+
+/* The limb as a dashed circle, and a stroke where solar north would be. */
+static void
+draw_preview (TfPlate *self, cairo_t *cr)
+{
+  static const double dash[] = { 7, 5 };
+  TfCorrection c = tf_session_get_preview (self->session);
+  const TfView *view = tf_session_get_view (self->session);
+  const TfGeometry *g = tf_frame_get_geometry (tf_session_get_frame (self->session));
+  double north = c.north_angle_deg * G_PI / 180, at[3][2];
+  static const double reach[] = { 0, 0.94, 1.06 };
+  for (guint k = 0; k < G_N_ELEMENTS (reach); k++)
+    if (!tf_view_from_pixel (view, g, c.centre_x - reach[k] * c.radius_px * sin (north),
+                             c.centre_y + reach[k] * c.radius_px * cos (north), &at[k][0],
+                             &at[k][1]))
+      return;
+  cairo_new_path (cr);
+  cairo_arc (cr, at[0][0], at[0][1], c.radius_px * view->zoom, 0, 2 * G_PI);
+  cairo_new_sub_path (cr);
+  cairo_move_to (cr, at[1][0], at[1][1]);
+  cairo_line_to (cr, at[2][0], at[2][1]);
+  cairo_set_source_rgba (cr, 0, 0, 0, 0.7);
+  cairo_set_line_width (cr, 4);
+  cairo_stroke_preserve (cr);
+  cairo_set_dash (cr, dash, 2, 0);
+  cairo_set_source_rgb (cr, 1, 0.945, 0.78);
+  cairo_set_line_width (cr, 1.8);
+  cairo_stroke (cr);
+  cairo_set_dash (cr, NULL, 0, 0);
+}
+
 typedef double Point[2];
 
 void
@@ -193,6 +233,8 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
   guint n;
   TfFrame *frame = tf_session_get_frame (self->session);
   tf_session_get_line (self->session, &line, &n);
+  if (tf_plate_has_preview (self))
+    draw_preview (self, cr);
   if (self->by_keys && self->pointer_in)
     draw_cross (self, cr);
   if (n == 0 || frame == NULL)

@@ -67,7 +67,8 @@ add_regions (TfPlateOverlay *over, TfSession *session)
       TfOverlayItem item = { .stroke = row->is_hint ? TF_STROKE_HINT : TF_STROKE_MARK,
                              .chosen = region == chosen && draft == NULL,
                              .verdict = (int)tf_region_item_get_verdict (region).kind };
-      add_item (over, item, row->outline, tf_region_item_get_label (region), &row->measure);
+      add_item (over, item, row->outline, tf_region_item_get_label (region),
+                tf_session_is_elsewhere (row) ? NULL : &row->measure);
     }
   TfOverlayItem item = { .stroke = TF_STROKE_DRAFT,
                          .chosen = TRUE,

@@ -13,7 +13,9 @@ struct _TfPlatePane
   GtkWidget parent;
   TfPlate *plate;
   GtkLabel *readout, *trouble, *tool_words;
-  GtkWidget *tools, *over_progress, *trouble_box;
+  GtkWidget *tools, *over_progress, *trouble_box, *lies_box;
+  GtkLabel *lies;
+  gint64 left; /* frame whose header may lie: the person has seen it and left it */
   GtkBox *foot;
   GtkLabel *progress_words;
   GtkProgressBar *progress;
@@ -93,9 +95,40 @@ status_changed (TfPlatePane *self)
     self->delay = g_timeout_add (QUIET_MS, show_progress, self);
 }
 
+/* The person is asked where the pixels and the header part by more than a frame can be used with. */
+static void
+show_lie (TfPlatePane *self)
+{
+  static const char *const codes[] = { "header-lies", "header-of-another-size" };
+  TfFrame *frame = tf_session_get_frame (self->session);
+  TfFrameItem *item = tf_session_get_frame_item (self->session);
+  TfCorrection own = tf_session_get_correction (self->session),
+               tried = tf_session_get_preview (self->session);
+  const TfNote *lie = NULL;
+  for (guint k = 0; frame != NULL && k < G_N_ELEMENTS (codes) && lie == NULL; k++)
+    lie = tf_notes_find (tf_frame_get_cautions (frame), codes[k]);
+  gboolean ask = lie != NULL && item != NULL && !tf_correction_is_set (&own)
+                 && tf_frame_item_get_row (item)->id != self->left
+                 && tf_session_can_correct (self->session) && !tf_correction_is_set (&tried);
+  gtk_widget_set_visible (self->lies_box, ask);
+  if (!ask)
+    return;
+  g_autofree char *text = tf_note_dup_text (lie, FALSE);
+  gtk_label_set_label (self->lies, text);
+}
+
+static void
+leave_lie (TfPlatePane *self)
+{
+  TfFrameItem *item = tf_session_get_frame_item (self->session);
+  self->left = item != NULL ? tf_frame_item_get_row (item)->id : 0;
+  show_lie (self);
+}
+
 static void
 frame_changed (TfPlatePane *self)
 {
+  show_lie (self);
   TfFrameItem *item = tf_session_get_frame_item (self->session);
   const char *problem = tf_session_get_frame_problem (self->session);
   if (item != NULL && problem != NULL && tf_frame_item_get_row (item)->refusal != NULL)
@@ -145,6 +178,8 @@ tf_plate_pane_set_session (TfPlatePane *self, TfSession *session)
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "overlays-changed", G_CALLBACK (show_lie), self,
+                           G_CONNECT_SWAPPED);
   view_changed (self);
   frame_changed (self);
   choice_changed (self);
@@ -187,6 +222,9 @@ tf_plate_pane_class_init (TfPlatePaneClass *klass)
   gtk_widget_class_bind_template_child (widget, TfPlatePane, progress);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range_button);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, as_stored);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, lies_box);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, lies);
+  gtk_widget_class_bind_template_callback (widget, leave_lie);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range_words);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range);
   gtk_widget_class_bind_template_callback (widget, range_moved);

@@ -44,6 +44,8 @@ enum
 void tf_plate_draw_picture (TfPlate *plate, int width, int height);
 void tf_plate_draw_overlay (TfPlate *plate, int width, int height);
 void tf_plate_draw_line (TfPlate *plate, cairo_t *cr, int width, int height);
+/** tf_plate_has_preview: a corrected disk is being tried and can be shown in this look. */
+gboolean tf_plate_has_preview (TfPlate *plate);
 /** tf_plate_place_overlay: where the overlay's top left stands now, and how much it is stretched. */
 void tf_plate_place_overlay (TfPlate *plate, double *dx, double *dy, double *stretch);
 /** tf_plate_item_at: (nullable) borrowed: the hint or mark under a point */

@@ -215,7 +215,8 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   gtk_snapshot_push_clip (snapshot, &all);
   tf_surface_append (snapshot, widget, self->picture, 0, 0, scale);
   tf_surface_append (snapshot, widget, self->overlay, dx, dy, scale / stretch);
-  if (line_n > 0 || (self->by_keys && tf_session_get_tool (self->session) == TF_TOOL_POLYGON))
+  if (line_n > 0 || (self->by_keys && tf_session_get_tool (self->session) == TF_TOOL_POLYGON)
+      || tf_plate_has_preview (self))
     {
       cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
       tf_plate_draw_line (self, cr, width, height);

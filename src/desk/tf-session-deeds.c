@@ -86,6 +86,16 @@ tf_session_keep (TfSession *self)
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
   if (!tf_session_can_keep (self) || !has_person (self))
     return FALSE;
+  if (self->draft == NULL && tf_session_is_elsewhere (chosen_row (self)))
+    {
+      g_autoptr (TfRegionItem) hint = g_object_ref (self->region);
+      tf_session_set_draft (self, chosen_row (self)->outline);
+      g_set_object (&self->replaced, hint);
+      tf_session_emit (self, TF_SIGNAL_CHOICE);
+      tf_session_say (self, _ ("The geometry of this frame was corrected: the hint is measured "
+                               "anew as a draft. K keeps it."));
+      return TRUE;
+    }
   TfDeed *deed = deed_new (self, TF_DEED_KEEP);
   if (self->draft != NULL)
     {

@@ -202,7 +202,12 @@ loaded (TfFrame *frame, const GError *error, gpointer data)
   TfSession *self = data;
   self->loading = FALSE;
   gboolean keep
-      = keeps_view (self->frame, frame) && self->fitted && self->view.look == TF_LOOK_DISK;
+      = self->reopening ? frame != NULL && !self->fitted
+                        : keeps_view (self->frame, frame) && self->fitted
+                              && self->view.look == TF_LOOK_DISK;
+  if (self->reopening && frame != NULL)
+    tf_session_move_draft (self, frame);
+  self->reopening = FALSE;
   g_clear_pointer (&self->frame, tf_frame_unref);
   g_clear_pointer (&self->frame_problem, g_free);
   if (frame != NULL)
@@ -219,6 +224,19 @@ loaded (TfFrame *frame, const GError *error, gpointer data)
   tf_session_emit (self, TF_SIGNAL_STATUS);
   g_autofree char *text = g_steal_pointer (&self->draft_text);
   tf_session_restore_draft (self, text);
+  if (self->draft != NULL && frame != NULL && !self->measured)
+    tf_session_measure_draft (self);
+}
+
+/* The same frame under another geometry: what is in hand stays in hand. */
+void
+tf_session_reopen_frame (TfSession *self)
+{
+  const TfFrameRow *row = tf_frame_item_get_row (self->frame_item);
+  TfFrameSpec spec = { .hdu = row->hdu, .plane = row->plane };
+  self->loading = self->reopening = TRUE;
+  tf_session_emit (self, TF_SIGNAL_STATUS);
+  tf_loader_open (self->loader, row->path, &spec, &self->correction, loaded, self);
 }
 
 void
@@ -239,7 +257,11 @@ tf_session_choose_frame (TfSession *self, TfFrameItem *item)
   self->loading = TRUE;
   tf_session_emit (self, TF_SIGNAL_FRAME);
   tf_session_emit (self, TF_SIGNAL_STATUS);
-  tf_loader_open (self->loader, row->path, &spec, loaded, self);
+  self->reopening = FALSE;
+  self->correction = tf_frame_row_get_correction (row, self->person);
+  self->preview = tf_correction_none ();
+  tf_session_update_method (self);
+  tf_loader_open (self->loader, row->path, &spec, &self->correction, loaded, self);
   tf_session_refresh (self, FALSE);
 }
 

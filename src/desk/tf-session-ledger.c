@@ -178,6 +178,7 @@ take_reading (TfSession *self, Reading *r)
   TfFrameItem *item = r->row != NULL ? tf_session_find_frame (self, r->row->id) : NULL;
   if (item != NULL)
     tf_frame_item_set_row (item, g_steal_pointer (&r->row));
+  tf_session_check_geometry (self);
   if (r->rows != NULL && r->frame == now)
     {
       tf_session_replace_regions (self, r->rows);

@@ -70,6 +70,10 @@ struct _TfSession
   char **to_add;      /* frames that wait until the ledger is open or others are in */
   char *feed_trouble; /* files that could not be taken in, one sentence a line */
 
+  TfCorrection correction; /* the person's, of the frame on the plate; none */
+  TfCorrection preview;    /* being tried; none */
+  gboolean reopening;      /* the frame in hand comes again under another correction */
+
   TfView view;
   gboolean fitted, north_up;
   gboolean pointer_in; /* over the plate */
@@ -140,6 +144,17 @@ void tf_session_restore_draft (TfSession *session, const char *text);
 /** tf_session_forget_hoped: what was on its way into the ledger is there, or will not come. */
 void tf_session_forget_hoped (TfSession *self);
 void tf_session_connect_writer (TfSession *session);
+/** tf_session_reopen_frame: under the correction that is in force now. */
+void tf_session_reopen_frame (TfSession *session);
+/** tf_session_check_geometry: when the ledger says another correction than the one shown. */
+void tf_session_check_geometry (TfSession *session);
+/** tf_session_update_method: the text that measures made now are kept with. */
+void tf_session_update_method (TfSession *session);
+/** tf_session_move_draft: the draft lies round the same pixels of @frame, which comes next. */
+void tf_session_move_draft (TfSession *session, TfFrame *frame);
+/** tf_session_move_row: what was measured under another geometry than the one shown lies round the
+ * same pixels, and says so. */
+void tf_session_move_row (TfSession *session, TfRow *row);
 void tf_session_init_overlays (TfSession *session);
 void tf_session_clear_overlays (TfSession *session);
 /** tf_session_update_overlays: asks for the lines and ghosts of what is on the plate now. */

@@ -106,7 +106,8 @@ tf_session_init (TfSession *self)
   self->pool = tf_pool_new ();
   self->workers = tf_workers_new (0);
   tf_measure_params_init (&self->params);
-  self->method = tf_options_dup_canonical (tf_measure_options, &self->params, TF_MEASURE_METHOD);
+  self->correction = self->preview = tf_correction_none ();
+  tf_session_update_method (self);
   init_lists (self);
   tf_session_replace_points (self, NULL, NULL, NULL);
   self->loader = tf_loader_new (self->pool);
@@ -241,6 +242,7 @@ tf_session_replace_regions (TfSession *self, GPtrArray *rows)
   for (guint k = 0; k < n; k++)
     {
       TfRow *row = g_ptr_array_index (rows, k);
+      tf_session_move_row (self, row);
       TfVerdict verdict = tf_judge_measure (self->judge, &row->measure, NULL);
       g_ptr_array_add (items, tf_region_item_new (row, verdict));
     }

@@ -112,6 +112,30 @@ void tf_session_set_palette (TfSession *session, TfPalette palette);
 TfPool *tf_session_get_pool (TfSession *session);
 TfWorkers *tf_session_get_workers (TfSession *session);
 
+/* -- the frame's geometry (tf-session-geometry.c) */
+/** tf_session_get_header_geometry: (nullable): as the frame's header has it */
+const TfGeometry *tf_session_get_header_geometry (TfSession *session);
+/** tf_session_get_correction: the person's correction that is in force; none */
+TfCorrection tf_session_get_correction (TfSession *session);
+/** tf_session_can_correct: a disk or cut-out is open, whose rows run with the Sun. */
+gboolean tf_session_can_correct (TfSession *session);
+/** tf_session_set_preview: a correction that is being tried: drawn over the plate. NULL: none */
+void tf_session_set_preview (TfSession *session, const TfCorrection *correction);
+TfCorrection tf_session_get_preview (TfSession *session);
+/** tf_session_fit_limb: looks for the limb in the pixels; when found, centre and radius of the
+ * preview are the limb's. Off the main thread. */
+void tf_session_fit_limb (TfSession *session);
+/** tf_session_keep_geometry: the preview becomes the person's correction; one that equals the header
+ * takes it back. FALSE when it cannot be kept. */
+gboolean tf_session_keep_geometry (TfSession *session);
+/** tf_session_count_elsewhere: own marks on this frame that were measured under another geometry */
+guint tf_session_count_elsewhere (TfSession *session);
+/** tf_session_is_elsewhere: whether its numbers are of another geometry than the one shown */
+gboolean tf_session_is_elsewhere (const TfRow *row);
+/** tf_session_measure_again: measures those anew, round the same pixels; each a new mark that takes
+ * the place of the old one. */
+gboolean tf_session_measure_again (TfSession *session);
+
 /* -- what lies over the picture (tf-session-overlays.c) */
 typedef enum
 {

@@ -12,8 +12,8 @@
 struct _TfSlipFrame
 {
   GtkWidget parent;
-  GtkLabel *title, *facts, *next, *cautions, *repairs;
-  GtkWidget *repairs_box, *cautions_box;
+  GtkLabel *title, *facts, *next, *cautions, *repairs, *geometry, *elsewhere;
+  GtkWidget *repairs_box, *cautions_box, *geometry_box, *again;
   TfSession *session;
 };
 
@@ -99,6 +99,47 @@ set_section (GtkWidget *box, GtkLabel *label, char *text)
 }
 
 static void
+append_persons (GString *text, const TfFrameRow *row, const char *own)
+{
+  for (guint k = 0; row->geometries != NULL && k < row->geometries->len; k++)
+    {
+      const TfPersonGeometry *geometry = g_ptr_array_index (row->geometries, k);
+      g_string_append_c (text, '\n');
+      if (g_strcmp0 (geometry->person, own) == 0)
+        g_string_append (text, _ ("corrected by you"));
+      else
+        g_string_append_printf (text, _ ("%s has a correction of their own"), geometry->person);
+    }
+}
+
+static void
+show_geometry (TfSlipFrame *self, const TfFrameRow *row, TfFrame *frame)
+{
+  TfCorrection c = frame != NULL ? tf_correction_of (tf_frame_get_geometry (frame))
+                                 : tf_correction_none ();
+  gtk_widget_set_visible (self->geometry_box, tf_correction_is_set (&c));
+  if (!tf_correction_is_set (&c))
+    return;
+  g_autofree char *x = tf_words_dup_number (c.centre_x, 1), *y = tf_words_dup_number (c.centre_y, 1),
+                  *r = tf_words_dup_number (c.radius_px, 1),
+                  *n = tf_words_dup_signed (c.north_angle_deg, 1);
+  GString *text = g_string_new (NULL);
+  g_string_append_printf (text, _ ("centre %s, %s · radius %s pixels\nsolar north %s° from up"), x, y,
+                          r, n);
+  append_persons (text, row, tf_session_get_person (self->session));
+  gtk_label_set_label (self->geometry, text->str);
+  g_string_free (text, TRUE);
+  guint k = tf_session_count_elsewhere (self->session);
+  g_autofree char *words = g_strdup_printf (
+      ngettext ("%u mark of yours was measured with another geometry than the one shown.",
+                "%u marks of yours were measured with another geometry than the one shown.", k),
+      k);
+  gtk_label_set_label (self->elsewhere, words);
+  gtk_widget_set_visible (GTK_WIDGET (self->elsewhere), k > 0);
+  gtk_widget_set_visible (self->again, k > 0);
+}
+
+static void
 show (TfSlipFrame *self)
 {
   TfFrameItem *item = tf_session_get_frame_item (self->session);
@@ -110,6 +151,7 @@ show (TfSlipFrame *self)
       gtk_label_set_label (self->next, "");
       gtk_widget_set_visible (self->cautions_box, FALSE);
       gtk_widget_set_visible (self->repairs_box, FALSE);
+      gtk_widget_set_visible (self->geometry_box, FALSE);
       return;
     }
   const TfFrameRow *row = tf_frame_item_get_row (item);
@@ -120,6 +162,7 @@ show (TfSlipFrame *self)
   gtk_label_set_label (self->next, row->refusal != NULL ? row->refusal
                                    : frame != NULL      ? next_step (self)
                                                         : "");
+  show_geometry (self, row, frame);
   set_section (self->cautions_box, self->cautions,
                dup_sentences (frame != NULL ? tf_frame_get_cautions (frame) : row->info->cautions));
   set_section (self->repairs_box, self->repairs, dup_sentences (row->info->repairs));
@@ -155,6 +198,10 @@ tf_slip_frame_class_init (TfSlipFrameClass *klass)
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, title);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, facts);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, next);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, geometry);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, geometry_box);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, elsewhere);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, again);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, cautions);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, cautions_box);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, repairs);

@@ -19,6 +19,10 @@ void tf_window_add_plate_actions (TfWindow *window);
 void tf_window_update_plate_actions (TfWindow *window);
 /** tf_window_restore_plate: as the preferences say. */
 void tf_window_restore_plate (TfWindow *window);
+/* tf-actions-frame.c */
+void tf_window_add_frame_actions (TfWindow *window);
+void tf_window_update_frame_actions (TfWindow *window);
+void tf_window_forget_geometry (TfWindow *window);
 /* tf-window-keys.c */
 /** tf_window_press: @detailed: a window action as of a key: done, or said why it cannot be */
 void tf_window_press (TfWindow *window, const char *detailed);
