@@ -8,6 +8,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
+#include "tf-group.h"
 
 #define O(member) offsetof (TfHaleParams, member)
 const TfOption tf_hale_options[] = {
@@ -40,17 +41,8 @@ typedef struct
 {
   const TfSample *sample;
   const TfVerdict *verdicts;
-  int cycle, hemisphere;
+  TfGroup group;
 } Group;
-
-static gboolean
-group_holds (const Group *group, guint k)
-{
-  double lat = tf_sample_get (group->sample, k)->lat_deg;
-  int side = lat > 0.0 ? 1 : lat < 0.0 ? -1 : 0;
-  return (group->cycle == 0 || group->verdicts[k].cycle.number == group->cycle)
-         && (group->hemisphere == 0 || side == group->hemisphere);
-}
 
 /* What the judged rows of a group hold, in order; breaks[k] is 1 or 0. */
 typedef struct
@@ -67,9 +59,9 @@ gather (const Group *group, TfHaleRow *row, Judged *judged)
   guint known = 0;
   for (guint k = 0; k < tf_sample_get_n (group->sample); k++)
     {
-      if (!group_holds (group, k))
-        continue;
       const TfSampleRow *pick = tf_sample_get (group->sample, k);
+      if (!tf_group_holds (&group->group, pick, &group->verdicts[k], FALSE))
+        continue;
       if (group->verdicts[k].kind == TF_VERDICT_CANNOT_SAY)
         {
           row->cannot_say++;
@@ -78,6 +70,7 @@ gather (const Group *group, TfHaleRow *row, Judged *judged)
       guint8 breaks = group->verdicts[k].kind == TF_VERDICT_BREAKS;
       row->breaks += breaks;
       row->keeps += 1u - breaks;
+      row->leaning += g_strcmp0 (group->verdicts[k].cycle.reason, "cycle-provisional") == 0;
       g_array_append_val (judged->breaks, breaks);
       g_array_append_val (judged->regions, pick->region);
       double chance = tf_hale_expected_false (pick);
@@ -93,7 +86,7 @@ gather (const Group *group, TfHaleRow *row, Judged *judged)
 static TfHaleRow
 fill_row (const Group *group, const TfHaleParams *params)
 {
-  TfHaleRow row = { .cycle = group->cycle, .hemisphere = group->hemisphere };
+  TfHaleRow row = { .cycle = group->group.cycle, .hemisphere = group->group.hemisphere };
   g_autoptr (GArray) regions = g_array_new (FALSE, FALSE, sizeof (guint32));
   g_autoptr (GArray) breaks = g_array_new (FALSE, FALSE, sizeof (guint8));
   Judged judged = { regions, breaks };
@@ -138,12 +131,21 @@ tf_hale_table (const TfSample *sample, const TfVerdict *verdicts, const TfHalePa
   for (guint c = 0; c < cycles->len; c++)
     for (guint h = 0; h < G_N_ELEMENTS (hemispheres); h++)
       {
-        Group group = { sample, verdicts, g_array_index (cycles, int, c), hemispheres[h] };
+        Group group
+            = { sample, verdicts, tf_group_of (g_array_index (cycles, int, c), hemispheres[h]) };
         TfHaleRow row = fill_row (&group, params);
         g_array_append_val (table, row);
       }
-  Group all = { sample, verdicts, 0, 0 };
+  Group all = { sample, verdicts, tf_group_of (0, 0) };
   TfHaleRow row = fill_row (&all, params);
   g_array_append_val (table, row);
   return table;
+}
+
+TfHaleRow
+tf_hale_row (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
+             const TfHaleParams *params)
+{
+  Group group = { sample, verdicts, tf_group_of (cycle, hemisphere) };
+  return fill_row (&group, params);
 }

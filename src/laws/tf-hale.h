@@ -29,6 +29,7 @@ typedef struct
   guint n;        /* keeps + breaks */
   guint regions;  /* distinct regions among those n */
   guint keeps, breaks, cannot_say;
+  guint leaning;         /* of n: whose cycle leans on a provisional minimum */
   double share;          /* breaks / n; NaN for n = 0 */
   TfInterval bounds;     /* at least / at most: every "cannot say" keeps / breaks */
   double expected_false; /* mean of tf_hale_expected_false() over the n rows that have one; NaN when
@@ -46,6 +47,9 @@ typedef struct
  */
 GArray *
 tf_hale_table (const TfSample *sample, const TfVerdict *verdicts, const TfHaleParams *params);
+/** tf_hale_row: one row of it. */
+TfHaleRow tf_hale_row (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
+                       const TfHaleParams *params);
 /**
  * tf_hale_expected_false: chance that position errors alone turn an axis over, so that a keeping
  * region reads as breaking.

@@ -6,6 +6,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-circular.h"
 #include "tf-constants.h"
 #include "tf-joy-line.h"
 
@@ -99,6 +100,13 @@ tf_joy_unit (TfJoyForm form)
   return forms[form].unit;
 }
 
+double
+tf_joy_tilt (const TfJoyFit *fit, TfJoyForm form, double abs_lat_deg)
+{
+  double intercept = isnan (fit->intercept) ? 0.0 : fit->intercept;
+  return forms[form].tilt (fit->slope * forms[form].x (abs_lat_deg) + intercept);
+}
+
 gboolean
 tf_joy_uses (const TfSampleRow *row, const TfVerdict *verdict, const TfJoyParams *params)
 {
@@ -114,18 +122,10 @@ tf_joy_uses (const TfSampleRow *row, const TfVerdict *verdict, const TfJoyParams
   return fabs (row->axis_tilt_deg) <= params->steep_max_deg;
 }
 
-static gboolean
-belongs (const TfSampleRow *row, const TfVerdict *verdict, int cycle, int hemisphere)
-{
-  if (cycle != 0 && (verdict->cycle.number != cycle || !verdict->cycle.sure))
-    return FALSE;
-  return hemisphere == 0 || (hemisphere > 0 ? row->lat_deg > 0.0 : row->lat_deg < 0.0);
-}
-
 /* The rows of one fit as plain columns. */
 typedef struct
 {
-  guint n, no_polarity;
+  guint n, no_polarity, leaning;
   double *lat, *tilt, *flux;
   guint32 *region;
 } Columns;
@@ -142,7 +142,7 @@ columns_clear (Columns *columns)
 G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (Columns, columns_clear)
 
 static Columns
-gather (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
+gather (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
         const TfJoyParams *params)
 {
   guint all = tf_sample_get_n (sample);
@@ -153,7 +153,7 @@ gather (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisp
   for (guint k = 0; k < all; k++)
     {
       const TfSampleRow *row = tf_sample_get (sample, k);
-      if (!belongs (row, &verdicts[k], cycle, hemisphere)
+      if (!tf_group_holds (group, row, &verdicts[k], TRUE)
           || !tf_joy_uses (row, &verdicts[k], params))
         continue;
       c.lat[c.n] = fabs (row->lat_deg);
@@ -161,6 +161,7 @@ gather (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisp
       c.flux[c.n] = row->flux_mx;
       c.region[c.n] = row->region;
       c.no_polarity += row->leading_polarity == 0;
+      c.leaning += g_strcmp0 (verdicts[k].cycle.reason, "cycle-provisional") == 0;
       c.n++;
     }
   return c;
@@ -176,22 +177,19 @@ robust_scatter (double *values, guint n)
   return 1.4826 * tf_median (values, n);
 }
 
-/* Mean, median and axial mean: the tilt's axis has no direction, so angles are doubled, averaged
- * and halved. */
 static void
 describe_tilts (const Columns *c, TfJoyFit *fit)
 {
-  double sum = 0.0, cosines = 0.0, sines = 0.0;
+  double sum = 0.0;
   for (guint k = 0; k < c->n; k++)
-    {
-      sum += c->tilt[k];
-      cosines += cos (2.0 * c->tilt[k] * TF_DEG);
-      sines += sin (2.0 * c->tilt[k] * TF_DEG);
-    }
+    sum += c->tilt[k];
+  TfCircular axes = tf_circular (c->tilt, c->n, TRUE);
   fit->mean_tilt_deg = c->n == 0 ? NAN : sum / c->n;
   fit->median_tilt_deg = tf_median (c->tilt, c->n);
-  fit->axial_mean_deg = c->n == 0 ? NAN : 0.5 * atan2 (sines, cosines) / TF_DEG;
-  fit->axial_resultant = c->n == 0 ? NAN : hypot (sines, cosines) / c->n;
+  fit->axial_mean_deg = axes.mean_deg;
+  fit->axial_resultant = axes.resultant;
+  fit->axial_sd_deg = axes.sd_deg;
+  fit->rayleigh_p = axes.rayleigh_p;
 }
 
 /* Bootstrap draws: the line through the points with the multiplicity that was drawn. */
@@ -199,7 +197,7 @@ typedef struct
 {
   TfJoyPoints *points;
   TfJoyLineFunc func;
-  double *intercepts; /* of the draws in order */
+  double *slopes, *intercepts; /* of the draws in order */
   guint at;
 } Draws;
 
@@ -209,6 +207,7 @@ draw_slope (const guint *rows, guint n, gpointer data)
   Draws *draws = data;
   tf_joy_points_count (draws->points, rows, n);
   TfJoyLine line = draws->func (draws->points);
+  draws->slopes[draws->at] = line.slope;
   draws->intercepts[draws->at++] = line.intercept;
   return line.slope;
 }
@@ -222,11 +221,13 @@ recall_intercept (const guint *rows, guint n, gpointer data)
 }
 
 static void
-fit_intervals (const Columns *c, const TfJoyParams *params, TfJoyPoints *points, TfJoyFit *fit)
+fit_intervals (const Columns *c, const TfJoyParams *params, TfJoyPoints *points, TfJoyFit *fit,
+               double *slopes)
 {
   guint n = (guint)MAX (params->draws, 0);
-  g_autofree double *intercepts = g_new (double, n + 1);
-  Draws draws = { points, fits[params->form][params->estimator], intercepts, 0 };
+  g_autofree double *intercepts = g_new (double, n + 1), *own = g_new (double, n + 1);
+  Draws draws = { points, fits[params->form][params->estimator], slopes != NULL ? slopes : own,
+                  intercepts, 0 };
   if (isnan (fit->slope))
     return;
   fit->slope_ci = tf_bootstrap_clusters (c->region, c->n, n, (guint64)params->seed, params->level,
@@ -238,7 +239,7 @@ fit_intervals (const Columns *c, const TfJoyParams *params, TfJoyPoints *points,
 }
 
 static void
-fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit)
+fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit, double *draws)
 {
   const Form *form = &forms[params->form];
   g_autofree double *x = g_new (double, c->n), *y = g_new (double, c->n);
@@ -252,10 +253,9 @@ fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit)
   fit->slope = line.slope;
   fit->intercept = line.intercept;
   for (guint k = 0; k < c->n; k++)
-    y[k] = c->tilt[k]
-           - form->tilt (line.slope * x[k] + (isnan (line.intercept) ? 0.0 : line.intercept));
+    y[k] = c->tilt[k] - tf_joy_tilt (fit, (TfJoyForm)params->form, c->lat[k]);
   fit->scatter_deg = robust_scatter (y, c->n);
-  fit_intervals (c, params, points, fit);
+  fit_intervals (c, params, points, fit, draws);
   tf_joy_points_free (points);
 }
 
@@ -263,10 +263,21 @@ TfJoyFit
 tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
             const TfJoyParams *params)
 {
+  TfGroup group = tf_group_of (cycle, hemisphere);
+  return tf_joy_fit_group (sample, verdicts, &group, params, NULL);
+}
+
+TfJoyFit
+tf_joy_fit_group (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
+                  const TfJoyParams *params, double *draws)
+{
   const TfInterval none = { NAN, NAN };
-  g_auto (Columns) c = gather (sample, verdicts, cycle, hemisphere, params);
-  TfJoyFit fit = { .cycle = cycle,
-                   .hemisphere = hemisphere,
+  g_auto (Columns) c = gather (sample, verdicts, group, params);
+  for (int k = 0; draws != NULL && k < params->draws; k++)
+    draws[k] = NAN;
+  TfJoyFit fit = { .cycle = group->cycle,
+                   .hemisphere = group->hemisphere,
+                   .leaning = c.leaning,
                    .n = c.n,
                    .regions = tf_count_distinct (c.region, c.n),
                    .no_polarity = c.no_polarity,
@@ -277,6 +288,6 @@ tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int he
                    .scatter_deg = NAN };
   describe_tilts (&c, &fit);
   if (c.n >= MIN_ROWS && tf_joy_offers (params->form, params->estimator))
-    fit_line (&c, params, &fit);
+    fit_line (&c, params, &fit, draws);
   return fit;
 }

@@ -9,6 +9,7 @@
 
 #include <glib.h>
 
+#include "tf-group.h"
 #include "tf-proportion.h"
 #include "tf-verdict.h"
 
@@ -48,6 +49,7 @@ typedef struct
 {
   int cycle, hemisphere; /* 0: all / both */
   guint n, regions, no_polarity;
+  guint leaning;                     /* rows whose cycle leans on a provisional minimum */
   double slope;                      /* in tf_joy_unit() */
   double intercept;                  /* deg; NaN where the form has none */
   TfInterval slope_ci, intercept_ci; /* bootstrap clustered by region */
@@ -55,12 +57,20 @@ typedef struct
   double mean_tilt_deg, median_tilt_deg;
   double axial_mean_deg;  /* half the direction of the mean of doubled angles, (-90, 90] */
   double axial_resultant; /* its length, 0 to 1 */
+  double axial_sd_deg;    /* circular standard deviation of the axes */
+  double rayleigh_p;      /* chance of so long a resultant without any preferred axis */
 } TfJoyFit;
 
 /** tf_joy_fit: one cycle (of which each row must surely be) and hemisphere (0: all / both). Slope
  * NaN when fewer than 3 rows, or when the form has no such estimator (tf_joy_offers()). */
 TfJoyFit tf_joy_fit (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
                      const TfJoyParams *params);
+/** tf_joy_fit_group: likewise of a group; its cycle and hemisphere stand in the result. @draws: (out)
+ * (nullable): params->draws slopes, one a bootstrap draw; NaN where it had none. */
+TfJoyFit tf_joy_fit_group (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
+                           const TfJoyParams *params, double *draws);
+/** tf_joy_tilt: the tilt that a fit of that form expects at |lat|, deg; NaN without a slope. */
+double tf_joy_tilt (const TfJoyFit *fit, TfJoyForm form, double abs_lat_deg);
 /** tf_joy_offers: whether that form can be fitted in that way (all can). */
 gboolean tf_joy_offers (TfJoyForm form, TfJoyEstimator estimator);
 /** tf_joy_uses: whether a row enters the Joy sample of @params: it has a latitude and a tilt that

@@ -29,6 +29,7 @@ typedef struct
   TfTime time;
   guint32 region; /* cluster: rows of one region share it */
   guint32 passage;
+  guint32 row;    /* the filler's own number of it */
   double lat_deg; /* midpoint of the poles, signed */
   double leading_lat_deg, following_lat_deg;
   double cmd_deg, mu;

@@ -72,6 +72,8 @@ main (int argc, char **argv)
   test_laws_add_joy ();
   test_laws_add_emergence ();
   test_laws_add_line ();
+  test_laws_add_compare ();
+  test_laws_add_sampling ();
   test_laws_add_agreement ();
   return g_test_run ();
 }

@@ -9,12 +9,14 @@
 
 void test_laws_add_bin (void);
 void test_laws_add_agreement (void);
+void test_laws_add_compare (void);
 void test_laws_add_cycle (void);
 void test_laws_add_emergence (void);
 void test_laws_add_hale (void);
 void test_laws_add_joy (void);
 void test_laws_add_line (void);
 void test_laws_add_proportion (void);
+void test_laws_add_sampling (void);
 void test_laws_add_verdict (void);
 
 /** test_laws_row: a well measured bipole of cycle 24 (2013-06-01) at @lat with that leader. */
