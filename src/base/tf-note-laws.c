@@ -35,6 +35,9 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "divides-shown", TF_NOTE_CAUTION,
     N_ ("Polarity was in sight while these divides were moved: {0}. What they say of Hale's law is "
         "circular to that extent.") },
+  { "every-mark-is-a-pick", TF_NOTE_CAUTION,
+    N_ ("Every mark is a pick: {0} picks of {1} regions. Intervals cluster by region; counts of "
+        "picks are not counts of regions.") },
   { "every-mark-is-its-own-passage", TF_NOTE_CAUTION,
     N_ ("Marks are not linked into passages yet: every mark counts as a passage of its own, so one "
         "region seen on several "
@@ -75,7 +78,11 @@ const TfNoteKind tf_note_kinds_laws[] = {
     N_ ("Frames of several instruments are pooled without a scale between their fields: {0}. "
         "Fluxes and floors are not alike.") },
   { "minimum-provisional", TF_NOTE_CAUTION,
-    N_ ("The next minimum is provisional: {0:.1f}, entered by a person.") },
+    N_ ("The next minimum is provisional: {0:.1f}, entered by a person; {1} of the picks lean on "
+        "it.") },
+  { "peak-not-bracketed", TF_NOTE_CAUTION,
+    N_ ("Peak not bracketed: of {0} of the {1} picks the greatest flux is the first or the last "
+        "mark, so that it may have been greater still when nobody looked.") },
   { "rows-simulated", TF_NOTE_CAUTION,
     N_ ("{0} of the rows come from invented frames (SIMULATD = T).") },
   { "rows-with-other-floor", TF_NOTE_CAUTION,

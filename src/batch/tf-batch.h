@@ -92,6 +92,19 @@ void tf_progress_end (TfProgress *progress);
  * are there. NULL with an error. */
 TfLedger *tf_batch_open_measured (const char *path, gboolean with_hints, GError **error);
 
+/* -- tables of text ---------------------------------------------------------------------------- */
+typedef struct _TfTable TfTable;
+/** tf_table_new: @heads: NULL-ended; the first @n_left columns are set left, the others right. */
+TfTable *tf_table_new (guint n_left, const char *const *heads);
+void tf_table_free (TfTable *table);
+/** tf_table_add: a row, its cells parted by tabulators. */
+void tf_table_add (TfTable *table, const char *format, ...) G_GNUC_PRINTF (2, 3);
+/** tf_table_dup_text: lines indented by two, each ended. */
+char *tf_table_dup_text (const TfTable *table);
+
+/** tf_batch_print_findings: a study's findings for a person. */
+void tf_batch_print_findings (const TfFindings *findings, const TfStudy *study);
+
 /* -- measures ---------------------------------------------------------------------------------- */
 /** TfFigures: what may stand beside a measure; each pair may be NULL. */
 typedef struct
@@ -107,6 +120,7 @@ void tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFra
 /** tf_batch_dup_measure_text: the same for a person, a few lines. */
 char *tf_batch_dup_measure_text (const TfMeasure *measure, const TfStudy *study);
 
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfTable, tf_table_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfWork, tf_batch_work_free)
 
 G_END_DECLS

@@ -14,12 +14,13 @@ compare_text (gconstpointer a, gconstpointer b)
 }
 
 static void
-note_instruments (TfNotes *cautions, const GPtrArray *rows)
+note_instruments (TfFindings *findings, const TfStudyRows *rows)
 {
   g_autoptr (GPtrArray) instruments = g_ptr_array_new ();
-  for (guint k = 0; k < rows->len; k++)
+  for (guint k = 0; rows->rows != NULL && k < tf_sample_get_n (findings->sample); k++)
     {
-      const TfRow *row = g_ptr_array_index (rows, k);
+      guint32 at = tf_sample_get (findings->sample, k)->row;
+      const TfRow *row = g_ptr_array_index (rows->rows, at);
       if (!g_ptr_array_find_with_equal_func (instruments, row->instrument, g_str_equal, NULL))
         g_ptr_array_add (instruments, row->instrument);
     }
@@ -28,7 +29,35 @@ note_instruments (TfNotes *cautions, const GPtrArray *rows)
   g_ptr_array_sort (instruments, compare_text);
   g_ptr_array_add (instruments, NULL);
   g_autofree char *names = g_strjoinv (", ", (char **)instruments->pdata);
-  tf_notes_add (cautions, "instruments-unscaled-pooled", "s", names);
+  tf_notes_add (findings->cautions, "instruments-unscaled-pooled", "s", names);
+}
+
+/* While nothing is linked, or as far as picks lie at an end of what was seen of them. */
+static void
+note_sampling (TfFindings *findings, const TfStudy *study)
+{
+  guint n = tf_sample_get_n (findings->every), picks = tf_sample_get_n (findings->sample);
+  gboolean linked = findings->sampling.passages < n;
+  if (!linked)
+    tf_notes_add (findings->cautions, "every-mark-is-its-own-passage", "");
+  else if (findings->sampling.not_bracketed > 0)
+    tf_notes_add (findings->cautions, "peak-not-bracketed", "ii",
+                  (int)findings->sampling.not_bracketed, (int)picks);
+  if (linked && study->sampling.rule == TF_SAMPLING_EVERY)
+    tf_notes_add (findings->cautions, "every-mark-is-a-pick", "ii", (int)picks,
+                  (int)tf_sample_count_regions (findings->sample));
+}
+
+/* How many verdicts lean on a minimum that a person entered. */
+static void
+note_provisional (TfFindings *findings, const TfStudy *study)
+{
+  guint leaning = 0;
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
+    leaning += g_strcmp0 (findings->verdicts[k].cycle.reason, "cycle-provisional") == 0;
+  if (!isnan (study->divide.provisional_year))
+    tf_notes_add (findings->cautions, "minimum-provisional", "di", study->divide.provisional_year,
+                  (int)leaning);
 }
 
 /* "24 N, 25 S": the divides that a person moved. */
@@ -45,19 +74,18 @@ note_divides (TfNotes *cautions, const TfStudy *study)
     tf_notes_add (cautions, "divides-moved", "s", names->str);
   if (study->divides_shown != NULL)
     tf_notes_add (cautions, "divides-shown", "s", study->divides_shown);
-  if (!isnan (study->divide.provisional_year))
-    tf_notes_add (cautions, "minimum-provisional", "d", study->divide.provisional_year);
 }
 
 void
-tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const GPtrArray *rows)
+tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows)
 {
   TfNotes *cautions = findings->cautions;
-  tf_notes_add (cautions, "every-mark-is-its-own-passage", "");
+  note_sampling (findings, study);
   if (findings->n_hints > 0)
     tf_notes_add (cautions, "hints-counted", "ii", (int)findings->n_hints, (int)findings->n_marks);
-  note_instruments (cautions, rows);
+  note_instruments (findings, rows);
   note_divides (cautions, study);
+  note_provisional (findings, study);
   if (findings->n_other_floor > 0)
     tf_notes_add (cautions, "rows-with-other-floor", "id", (int)findings->n_other_floor,
                   findings->even_floor_gauss);

@@ -7,7 +7,6 @@
 
 /* The study's one even floor, and the rows measured with it. */
 
-
 gboolean
 tf_study_has_floor (const TfRow *row, double gauss)
 {
@@ -68,7 +67,8 @@ tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GE
       TfMeasureParams params;
       TfMeasure even = { 0 };
       g_autofree char *method = tf_measure_dup_even_method (row->method, floor_gauss, &params);
-      if (method == NULL || !tf_ledger_has_measure (ledger, row->frame, row->outline, method, &even))
+      if (method == NULL
+          || !tf_ledger_has_measure (ledger, row->frame, row->outline, method, &even))
         continue;
       tf_measure_clear (&row->measure);
       row->measure = even;

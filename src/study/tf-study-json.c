@@ -10,38 +10,23 @@
 /* The `laws` document. */
 
 static void
-build_interval (JsonBuilder *builder, const char *key, TfInterval interval)
-{
-  tf_json_numbers (builder, key, (const double[]){ interval.low, interval.high }, 2);
-}
-
-static void
-build_cell (JsonBuilder *builder, int cycle, int hemisphere)
-{
-  if (cycle != 0)
-    tf_json_int (builder, "cycle", cycle);
-  else
-    tf_json_null (builder, "cycle");
-  tf_json_string (builder, "hemisphere", hemisphere > 0 ? "N" : hemisphere < 0 ? "S" : "both");
-}
-
-static void
 build_hale (JsonBuilder *builder, const TfHaleRow *r, double level)
 {
   json_builder_begin_object (builder);
-  build_cell (builder, r->cycle, r->hemisphere);
+  tf_study_build_cell (builder, r->cycle, r->hemisphere);
   tf_json_int (builder, "n", r->n);
   tf_json_int (builder, "regions", r->regions);
   tf_json_int (builder, "keeps", r->keeps);
   tf_json_int (builder, "breaks", r->breaks);
   tf_json_int (builder, "cannot_say", r->cannot_say);
   tf_json_number (builder, "share_breaks", r->share);
-  build_interval (builder, "bounds", r->bounds);
+  tf_study_build_interval (builder, "bounds", r->bounds);
   tf_json_number (builder, "expected_false", r->expected_false);
-  build_interval (builder, "wilson", r->wilson);
-  build_interval (builder, "clopper_pearson", r->clopper_pearson);
-  build_interval (builder, "cluster", r->cluster);
+  tf_study_build_interval (builder, "wilson", r->wilson);
+  tf_study_build_interval (builder, "clopper_pearson", r->clopper_pearson);
+  tf_study_build_interval (builder, "cluster", r->cluster);
   tf_json_number (builder, "level", level);
+  tf_json_int (builder, "on_provisional_minimum", r->leaning);
   json_builder_end_object (builder);
 }
 
@@ -49,19 +34,26 @@ static void
 build_joy (JsonBuilder *builder, const TfJoyFit *f, const TfJoyParams *params)
 {
   json_builder_begin_object (builder);
-  build_cell (builder, f->cycle, f->hemisphere);
+  tf_study_build_cell (builder, f->cycle, f->hemisphere);
   tf_json_string (builder, "form", tf_joy_form_names[params->form]);
   tf_json_string (builder, "estimator", tf_joy_estimator_names[params->estimator]);
   tf_json_int (builder, "n", f->n);
   tf_json_int (builder, "regions", f->regions);
   tf_json_int (builder, "no_polarity", f->no_polarity);
   tf_json_number (builder, "slope", f->slope);
-  build_interval (builder, "slope_ci", f->slope_ci);
+  tf_study_build_interval (builder, "slope_ci", f->slope_ci);
   tf_json_number (builder, "intercept", f->intercept);
-  build_interval (builder, "intercept_ci", f->intercept_ci);
+  tf_study_build_interval (builder, "intercept_ci", f->intercept_ci);
   tf_json_number (builder, "scatter_deg", f->scatter_deg);
   tf_json_number (builder, "level", params->level);
   tf_json_string (builder, "unit", tf_joy_unit ((TfJoyForm)params->form));
+  tf_json_number (builder, "mean_tilt_deg", f->mean_tilt_deg);
+  tf_json_number (builder, "median_tilt_deg", f->median_tilt_deg);
+  tf_json_number (builder, "axial_mean_deg", f->axial_mean_deg);
+  tf_json_number (builder, "axial_resultant", f->axial_resultant);
+  tf_json_number (builder, "axial_sd_deg", f->axial_sd_deg);
+  tf_json_number (builder, "rayleigh_p", f->rayleigh_p);
+  tf_json_int (builder, "on_provisional_minimum", f->leaning);
   json_builder_end_object (builder);
 }
 
@@ -83,11 +75,13 @@ build_counts (JsonBuilder *builder, const char *name, GHashTable *counts)
 }
 
 static void
-build_sample (JsonBuilder *builder, const TfFindings *findings)
+build_sample (JsonBuilder *builder, const TfFindings *findings, const TfStudy *study)
 {
   json_builder_set_member_name (builder, "sample");
   json_builder_begin_object (builder);
-  tf_json_string (builder, "rule", "every-mark");
+  tf_json_string (builder, "rule", tf_sampling_names[study->sampling.rule]);
+  tf_json_int (builder, "picks", tf_sample_get_n (findings->sample));
+  tf_json_int (builder, "peak_not_bracketed", findings->sampling.not_bracketed);
   tf_json_int (builder, "regions", tf_sample_count_regions (findings->sample));
   tf_json_int (builder, "passages", tf_sample_count_passages (findings->sample));
   tf_json_int (builder, "marks", findings->n_marks);
@@ -114,10 +108,13 @@ build_study (JsonBuilder *builder, const TfStudy *study)
   json_builder_begin_object (builder);
   tf_json_string (builder, "name", study->name);
   build_options (builder, "sieve", tf_sieve_options, &study->sieve);
+  build_options (builder, "sampling", tf_sampling_options, &study->sampling);
   build_options (builder, "cycles", tf_divide_options, &study->divide);
   build_options (builder, "verdict", tf_verdict_options, &study->verdict);
   build_options (builder, "hale", tf_hale_options, &study->hale);
   build_options (builder, "joy", tf_joy_options, &study->joy);
+  build_options (builder, "drift", tf_drift_options, &study->drift);
+  build_options (builder, "emergence", tf_emergence_options, &study->emergence);
   json_builder_end_object (builder);
 }
 
@@ -126,32 +123,35 @@ build_what_if (JsonBuilder *builder, const TfWhatIf *row)
 {
   json_builder_begin_object (builder);
   tf_json_string (builder, "choice", row->name);
+  tf_json_string (builder, "missing", row->missing);
+  if (row->missing != NULL)
+    {
+      tf_json_int (builder, "rows_lacking", row->n_missing);
+      json_builder_end_object (builder);
+      return;
+    }
   tf_json_int (builder, "n", row->n);
+  tf_json_int (builder, "regions", row->regions);
   tf_json_int (builder, "breaks", row->breaks);
   tf_json_number (builder, "share_breaks", row->share);
+  tf_json_int (builder, "n_tilts", row->n_tilts);
   tf_json_number (builder, "slope", row->slope);
+  tf_json_int (builder, "on_provisional_minimum", row->leaning);
   json_builder_end_object (builder);
 }
 
 /* The three cycle assignments always stand together. */
 static void
-build_cycle_choice (JsonBuilder *builder, const GArray *what_if)
+build_cycle_choice (JsonBuilder *builder, const TfFindings *findings)
 {
-  static const struct
-  {
-    const char *choice, *key;
-  } three[] = { { "cycle-by-date-only", "date_only" },
-                { "cycle-by-latitude-alone", "latitude" },
-                { "as-chosen", "unsure_left_out" } };
+  static const char *const keys[] = { "date_only", "latitude", "unsure_left_out" };
   json_builder_set_member_name (builder, "cycle_choice");
   json_builder_begin_object (builder);
-  for (guint t = 0; t < G_N_ELEMENTS (three); t++)
-    for (guint k = 0; k < what_if->len; k++)
-      if (strcmp (g_array_index (what_if, TfWhatIf, k).name, three[t].choice) == 0)
-        {
-          json_builder_set_member_name (builder, three[t].key);
-          build_what_if (builder, &g_array_index (what_if, TfWhatIf, k));
-        }
+  for (guint k = 0; k < G_N_ELEMENTS (keys); k++)
+    {
+      json_builder_set_member_name (builder, keys[k]);
+      build_what_if (builder, &findings->cycle_choice[k]);
+    }
   json_builder_end_object (builder);
 }
 
@@ -160,7 +160,7 @@ tf_findings_build_json (const TfFindings *findings, const TfStudy *study, JsonBu
 {
   json_builder_begin_object (builder);
   build_study (builder, study);
-  build_sample (builder, findings);
+  build_sample (builder, findings, study);
   json_builder_set_member_name (builder, "hale");
   json_builder_begin_array (builder);
   for (guint k = 0; k < findings->hale->len; k++)
@@ -173,7 +173,8 @@ tf_findings_build_json (const TfFindings *findings, const TfStudy *study, JsonBu
   json_builder_end_array (builder);
   tf_json_number (builder, "mean_tilt_deg", findings->mean_tilt_deg);
   tf_json_number (builder, "median_tilt_deg", findings->median_tilt_deg);
-  build_cycle_choice (builder, findings->what_if);
+  tf_study_build_parts (builder, findings);
+  build_cycle_choice (builder, findings);
   json_builder_set_member_name (builder, "what_if");
   json_builder_begin_array (builder);
   for (guint k = 0; k < findings->what_if->len; k++)

@@ -7,22 +7,44 @@
 
 G_BEGIN_DECLS
 
+/** TfStudyRows: what a study reads: the ledger's rows, and each as a sample row whose number is its
+ * place among them. */
+typedef struct
+{
+  const GPtrArray *rows; /* TfRow; NULL: there is nothing but the sample rows */
+  TfSample *all;
+} TfStudyRows;
+
+/** tf_study_sample_rows: (transfer full): ledger rows as sample rows. */
+TfSample *tf_study_sample_rows (const GPtrArray *rows);
 /** tf_study_dup_divides: the moved divides of the study under its options. */
 TfDivides *tf_study_dup_divides (const TfStudy *study);
 /** tf_study_judge: (transfer full): a verdict for each row, as if every minimum had come @later_s
  * seconds later. */
 TfVerdict *tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s);
-/** tf_study_take_rows: the rows that pass the sieve into @findings; what is left out is counted by
- * reason. */
-void tf_study_take_rows (TfFindings *findings, const TfStudy *study, const GPtrArray *rows);
+/** tf_study_marks: (transfer full): the rows that pass the mark conditions. @findings: (nullable):
+ * counts what is left out by reason. */
+TfSample *tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings);
+/** tf_study_picks: (transfer full): one pick a passage of @marks, by the sampling rule, as far as it
+ * passes the region conditions. @findings: (nullable): likewise, and the tally of the rule. */
+TfSample *tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *marks,
+                          TfFindings *findings);
 /** tf_study_add_cautions: what must be said beside the numbers. */
-void tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const GPtrArray *rows);
+void tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows);
 /** tf_study_count: one more of @key. */
 void tf_study_count (GHashTable *counts, const char *key);
 /** tf_study_has_floor: whether a row was measured with the even floor @gauss (within 0.5 %). */
 gboolean tf_study_has_floor (const TfRow *row, double gauss);
+
+/* Members of the `laws` document. */
+void tf_study_build_interval (JsonBuilder *builder, const char *key, TfInterval interval);
+void tf_study_build_cell (JsonBuilder *builder, int cycle, int hemisphere);
+void tf_study_build_parts (JsonBuilder *builder, const TfFindings *findings);
+
 /** tf_study_what_if: (element-type TfWhatIf): the share and the slope under other choices, each
- * alone. */
-GArray *tf_study_what_if (const TfStudy *study, const TfSample *sample);
+ * alone, and into findings->cycle_choice the three ways of telling a cycle. @ledger: (nullable): for
+ * what needs other measures or the hints. */
+GArray *tf_study_what_if (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings,
+                          TfLedger *ledger);
 
 G_END_DECLS

@@ -6,9 +6,9 @@
 
 #include "tf-study-private.h"
 
-/* Which rows a study takes. Mark conditions (kind, CMD, mu) first, then region conditions (size,
- * flux, separation). A condition on something that a row lacks does not drop it; how many passed so
- * is counted. */
+/* Which rows a study takes. Mark conditions (kind, CMD, mu) first, then one pick a passage, then
+ * region conditions (size, flux, separation) on the pick. A condition on something that a row lacks
+ * does not drop it; how many passed so is counted. */
 
 typedef struct
 {
@@ -20,38 +20,51 @@ typedef struct
 
 enum
 {
-  CONDITIONS = 5
+  MARK_CONDITIONS = 2,
+  REGION_CONDITIONS = 4
 };
 
 static void
-list_conditions (const TfSieveParams *p, const TfSampleRow *row, Condition conditions[CONDITIONS])
+mark_conditions (const TfSieveParams *p, const TfSampleRow *row, Condition list[MARK_CONDITIONS])
 {
-  const Condition list[CONDITIONS] = {
-    { "cmd-beyond", fabs (row->cmd_deg), p->cmd_max_deg, TRUE, TRUE },
-    { "mu-below", row->mu, p->mu_min, FALSE, p->mu_min > 0 },
-    { "ephemeral", row->size < 0 ? NAN : row->size, 0, TRUE, !p->with_ephemeral },
-    { "flux-below", row->flux_mx, p->flux_min_mx, FALSE, p->flux_min_mx > 0 },
-    { "separation-below", row->separation_deg, p->separation_min_deg, FALSE,
-      p->separation_min_deg > 0 },
-  };
-  memcpy (conditions, list, sizeof list);
+  list[0] = (Condition){ "cmd-beyond", fabs (row->cmd_deg), p->cmd_max_deg, TRUE, TRUE };
+  list[1] = (Condition){ "mu-below", row->mu, p->mu_min, FALSE, p->mu_min > 0 };
 }
 
-/* Why a row is not taken, as a code for the count; NULL when it is. */
-static const char *
-find_reason (const TfSieveParams *p, const TfRow *row, const Condition conditions[CONDITIONS])
+static void
+region_conditions (const TfSieveParams *p, const TfSampleRow *row,
+                   Condition list[REGION_CONDITIONS])
 {
-  if (!p->with_models && g_strcmp0 (row->kind, "model map") == 0)
-    return "model-map";
-  if (row->is_hint && row->unipolar)
-    return "unipolar-hint";
-  for (guint k = 0; k < CONDITIONS; k++)
+  double size = row->size < 0 ? NAN : row->size;
+  list[0] = (Condition){ "ephemeral", size, 0, TRUE, p->ephemeral == TF_EPHEMERAL_OUT };
+  list[1] = (Condition){ "not-ephemeral", size, 1, FALSE, p->ephemeral == TF_EPHEMERAL_ALONE };
+  list[2] = (Condition){ "flux-below", row->flux_mx, p->flux_min_mx, FALSE, p->flux_min_mx > 0 };
+  list[3] = (Condition){ "separation-below", row->separation_deg, p->separation_min_deg, FALSE,
+                         p->separation_min_deg > 0 };
+}
+
+/* The first condition that a row does not meet; NULL when it meets all. */
+static const char *
+find_reason (const Condition *conditions, guint n)
+{
+  for (guint k = 0; k < n; k++)
     {
       const Condition *c = &conditions[k];
       if (c->active && (c->above ? c->value > c->limit : c->value < c->limit))
         return c->reason;
     }
   return NULL;
+}
+
+/* What the ledger's row alone can tell. */
+static const char *
+find_row_reason (const TfSieveParams *p, const TfRow *row)
+{
+  if (!p->with_hints && row->is_hint)
+    return "hint";
+  if (!p->with_models && g_strcmp0 (row->kind, "model map") == 0)
+    return "model-map";
+  return row->is_hint && row->unipolar ? "unipolar-hint" : NULL;
 }
 
 void
@@ -61,37 +74,65 @@ tf_study_count (GHashTable *counts, const char *key)
   g_hash_table_insert (counts, (gpointer)key, GUINT_TO_POINTER (n + 1));
 }
 
-static void
-take_row (TfFindings *findings, const TfRow *row, const TfSampleRow *s)
+/* Counts a row that is left out, or the conditions that it passed for want of the quantity. Hints
+ * that nobody asked for are not worth a count. */
+static gboolean
+settle (const char *reason, const Condition *conditions, guint n, TfFindings *findings)
 {
-  findings->marks[tf_sample_get_n (findings->sample)] = row->is_hint ? -row->mark : row->mark;
-  tf_sample_add (findings->sample, s);
-  findings->n_marks += !row->is_hint;
-  findings->n_hints += row->is_hint != FALSE;
-  findings->n_other_floor += !tf_study_has_floor (row, findings->even_floor_gauss);
-  findings->simulated += row->simulated != FALSE;
+  if (findings == NULL)
+    return reason == NULL;
+  if (reason != NULL && strcmp (reason, "hint") != 0)
+    tf_study_count (findings->left_out, reason);
+  for (guint c = 0; reason == NULL && c < n; c++)
+    if (conditions[c].active && isnan (conditions[c].value))
+      tf_study_count (findings->passed_without, conditions[c].reason);
+  return reason == NULL;
 }
 
-void
-tf_study_take_rows (TfFindings *findings, const TfStudy *study, const GPtrArray *rows)
+TfSample *
+tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings)
 {
-  findings->marks = g_new0 (gint64, rows->len + 1);
-  for (guint k = 0; k < rows->len; k++)
+  TfSample *marks = tf_sample_new ();
+  for (guint k = 0; k < tf_sample_get_n (rows->all); k++)
     {
-      const TfRow *row = g_ptr_array_index (rows, k);
-      TfSampleRow s;
-      Condition conditions[CONDITIONS];
-      tf_study_row (row, &s);
-      list_conditions (&study->sieve, &s, conditions);
-      const char *reason = find_reason (&study->sieve, row, conditions);
-      if (reason != NULL)
-        {
-          tf_study_count (findings->left_out, reason);
-          continue;
-        }
-      for (guint c = 0; c < CONDITIONS; c++)
-        if (conditions[c].active && isnan (conditions[c].value))
-          tf_study_count (findings->passed_without, conditions[c].reason);
-      take_row (findings, row, &s);
+      const TfSampleRow *s = tf_sample_get (rows->all, k);
+      const TfRow *row = rows->rows != NULL ? g_ptr_array_index (rows->rows, s->row) : NULL;
+      Condition conditions[MARK_CONDITIONS];
+      mark_conditions (&study->sieve, s, conditions);
+      const char *reason = row != NULL ? find_row_reason (&study->sieve, row) : NULL;
+      if (reason == NULL)
+        reason = find_reason (conditions, MARK_CONDITIONS);
+      if (settle (reason, conditions, MARK_CONDITIONS, findings))
+        tf_sample_add (marks, s);
     }
+  return marks;
+}
+
+TfSample *
+tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *marks,
+                TfFindings *findings)
+{
+  TfSamplingTally tally;
+  TfSample *picks = tf_sample_new ();
+  g_autoptr (TfSample) found = tf_sampling_pick (marks, &study->sampling, &tally);
+  tally.not_bracketed = 0;
+  for (guint k = 0; k < tf_sample_get_n (found); k++)
+    {
+      const TfSampleRow *s = tf_sample_get (found, k);
+      Condition conditions[REGION_CONDITIONS];
+      region_conditions (&study->sieve, s, conditions);
+      const char *reason = find_reason (conditions, REGION_CONDITIONS);
+      if (!settle (reason, conditions, REGION_CONDITIONS, findings))
+        continue;
+      tally.not_bracketed += s->bracketed == 0;
+      tf_sample_add (picks, s);
+    }
+  if (findings != NULL)
+    {
+      findings->sampling = tally;
+      if (tally.without > 0)
+        g_hash_table_insert (findings->left_out, (gpointer) "beyond-the-sampling-rule",
+                             GUINT_TO_POINTER (tally.without));
+    }
+  return picks;
 }

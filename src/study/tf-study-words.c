@@ -6,8 +6,8 @@
 
 #include "tf-study-private.h"
 
-/* The numbers as they would stand in a paper. Whole sentences, so that a translator can turn them.
- */
+/* The numbers as they would stand in a paper: short whole sentences, a line each, so that a translator
+ * can turn them. */
 
 static const TfHaleRow *
 all_cycles (const TfFindings *findings)
@@ -39,19 +39,35 @@ add_hale (GString *out, const TfFindings *findings, const TfStudy *study)
   const TfHaleRow *r = all_cycles (findings);
   if (r == NULL || r->n == 0)
     {
-      g_string_append (out, _ ("No region of the sample has a verdict under Hale's law. "));
+      g_string_append (out, _ ("No region of the sample has a verdict under Hale's law.\n"));
       return;
     }
-  g_string_append_printf (out,
-                          _ ("Of %u picks (%u regions) with a verdict, %u (%.1f %%, %.0f %%: "
-                             "%.1f–%.1f %%) break Hale's law; %u "
-                             "more cannot be said (at least %.1f, at most %.1f %%). "),
-                          r->n, r->regions, r->breaks, 100 * r->share, 100 * study->hale.level,
-                          100 * r->clopper_pearson.low, 100 * r->clopper_pearson.high,
-                          r->cannot_say, 100 * r->bounds.low, 100 * r->bounds.high);
+  g_string_append_printf (
+      out,
+      _ ("Of %u picks (%u regions) with a verdict, %u (%.1f %%, %.0f %%: %.1f–%.1f %%) break "
+         "Hale's law.\n"),
+      r->n, r->regions, r->breaks, 100 * r->share, 100 * study->hale.level,
+      100 * r->clopper_pearson.low, 100 * r->clopper_pearson.high);
+  g_string_append_printf (
+      out, _ ("%u more cannot be said: the share is at least %.1f, at most %.1f %%.\n"),
+      r->cannot_say, 100 * r->bounds.low, 100 * r->bounds.high);
   if (isfinite (r->expected_false))
-    g_string_append_printf (out, _ ("Errors of place alone would make %.2f %% seem to break it. "),
+    g_string_append_printf (out, _ ("Errors of place alone would make %.2f %% seem to break it.\n"),
                             100 * r->expected_false);
+}
+
+/* The three ways of telling a cycle always stand together. */
+static void
+add_cycle_choice (GString *out, const TfFindings *findings)
+{
+  const TfWhatIf *c = findings->cycle_choice;
+  if (c[0].n + c[1].n + c[2].n > 0)
+    g_string_append_printf (out,
+                            _ ("Told by the date alone the share is %.1f %% (n %u), by latitude "
+                               "%.1f %% (n %u), with unsure cycles left out %.1f %% (n %u).\n"),
+                            c[0].n > 0 ? 100 * c[0].share : 0.0, c[0].n,
+                            c[1].n > 0 ? 100 * c[1].share : 0.0, c[1].n,
+                            c[2].n > 0 ? 100 * c[2].share : 0.0, c[2].n);
 }
 
 static void
@@ -60,7 +76,7 @@ add_joy (GString *out, const TfFindings *findings, const TfStudy *study)
   const TfJoyFit *f = all_tilts (findings);
   if (f == NULL || f->n < 3)
     {
-      g_string_append (out, _ ("There are too few tilts for Joy's law. "));
+      g_string_append (out, _ ("There are too few tilts for Joy's law.\n"));
       return;
     }
   const char *form = tf_joy_form_names[study->joy.form],
@@ -68,13 +84,14 @@ add_joy (GString *out, const TfFindings *findings, const TfStudy *study)
   double separation = fmax (study->joy.separation_min_deg, study->sieve.separation_min_deg);
   g_autofree char *cut = separation > 0 ? g_strdup_printf (_ ("separation from %.1f°"), separation)
                                         : g_strdup (_ ("all separations"));
-  g_string_append_printf (out,
-                          _ ("Joy's law (%s, %s, %s, %u picks, %u without polarity): slope %+.3f "
-                             "%s (%.0f %%: %+.3f to %+.3f, "
-                             "clustered by region), scatter %.1f°. "),
-                          form, estimator, cut, f->n, f->no_polarity, f->slope,
-                          tf_joy_unit ((TfJoyForm)study->joy.form), 100 * study->joy.level,
-                          f->slope_ci.low, f->slope_ci.high, f->scatter_deg);
+  g_string_append_printf (
+      out,
+      _ ("Joy's law (%s, %s, %s, %u picks, %u without polarity): slope %+.3f %s (%.0f %%: %+.3f "
+         "to %+.3f, clustered by region).\n"),
+      form, estimator, cut, f->n, f->no_polarity, f->slope,
+      tf_joy_unit ((TfJoyForm)study->joy.form), 100 * study->joy.level, f->slope_ci.low,
+      f->slope_ci.high);
+  g_string_append_printf (out, _ ("Tilts scatter about it by %.1f°.\n"), f->scatter_deg);
 }
 
 /* What changes the meaning of the numbers stands among them. */
@@ -88,18 +105,30 @@ add_conditions (GString *out, const TfFindings *findings)
       const TfNote *note = tf_notes_find (findings->cautions, codes[k]);
       g_autofree char *text = note != NULL ? tf_note_dup_text (note, FALSE) : NULL;
       if (text != NULL)
-        g_string_append_printf (out, "%s ", text);
+        g_string_append_printf (out, "%s\n", text);
     }
 }
 
 char *
 tf_findings_dup_words (const TfFindings *findings, const TfStudy *study)
 {
+  static const char *const rules[] = { N_ ("the mark of greatest flux of each passage"),
+                                       N_ ("the mark of each passage nearest the central meridian"),
+                                       N_ ("the mean of each passage's marks"), N_ ("every mark") };
   GString *out = g_string_new (NULL);
   g_string_append_printf (
-      out, _ ("Sample: %u marks and %u hints, |CMD| ≤ %.0f°, even floor %.1f G. "),
-      findings->n_marks, findings->n_hints, study->sieve.cmd_max_deg, findings->even_floor_gauss);
+      out, _ ("Sample: %u picks, %s, from %u marks and %u hints of %u regions.\n"),
+      tf_sample_get_n (findings->sample), _ (rules[study->sampling.rule]), findings->n_marks,
+      findings->n_hints, tf_sample_count_regions (findings->sample));
+  if (isfinite (findings->even_floor_gauss))
+    g_string_append_printf (out,
+                            _ ("Marks within %.0f° of the central meridian, even floor %.1f G.\n"),
+                            study->sieve.cmd_max_deg, findings->even_floor_gauss);
+  else
+    g_string_append_printf (out, _ ("Marks within %.0f° of the central meridian.\n"),
+                            study->sieve.cmd_max_deg);
   add_hale (out, findings, study);
+  add_cycle_choice (out, findings);
   add_joy (out, findings, study);
   add_conditions (out, findings);
   g_string_truncate (out, out->len - 1);

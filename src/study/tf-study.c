@@ -12,6 +12,8 @@ G_DEFINE_QUARK (tf - study - error - quark, tf_study_error)
 
 #define SIEVE(member) offsetof (TfSieveParams, member)
 
+static const char *const ephemeral_names[] = { "left-out", "taken-in", "alone", NULL };
+
 const TfOption tf_sieve_options[] = {
   { "with-hints", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take hints in, counted apart"),
     SIEVE (with_hints) },
@@ -22,8 +24,8 @@ const TfOption tf_sieve_options[] = {
     SIEVE (flux_min_mx) },
   { "separation-min", TF_OPTION_NUMBER, "deg", 0, 0, 90, NULL, N_ ("least separation of the poles"),
     SIEVE (separation_min_deg) },
-  { "with-ephemeral", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take ephemeral regions in"),
-    SIEVE (with_ephemeral) },
+  { "ephemeral", TF_OPTION_CHOICE, "", TF_EPHEMERAL_OUT, 0, 2, ephemeral_names,
+    N_ ("what to do with ephemeral regions"), SIEVE (ephemeral) },
   { "with-models", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take model maps in"),
     SIEVE (with_models) },
   { NULL },
@@ -35,10 +37,12 @@ tf_study_new_default (void)
   TfStudy *study = g_new0 (TfStudy, 1);
   study->name = g_strdup ("default");
   tf_options_reset (tf_sieve_options, &study->sieve);
+  tf_options_reset (tf_sampling_options, &study->sampling);
   tf_options_reset (tf_verdict_options, &study->verdict);
   tf_options_reset (tf_divide_options, &study->divide);
   tf_options_reset (tf_hale_options, &study->hale);
   tf_options_reset (tf_joy_options, &study->joy);
+  tf_options_reset (tf_drift_options, &study->drift);
   tf_options_reset (tf_emergence_options, &study->emergence);
   return study;
 }
@@ -68,6 +72,7 @@ tf_findings_free (TfFindings *findings)
   if (findings == NULL)
     return;
   g_clear_pointer (&findings->sample, tf_sample_free);
+  g_clear_pointer (&findings->every, tf_sample_free);
   g_free (findings->verdicts);
   g_free (findings->marks);
   g_clear_pointer (&findings->left_out, g_hash_table_unref);
@@ -76,6 +81,11 @@ tf_findings_free (TfFindings *findings)
   g_clear_pointer (&findings->hale, g_array_unref);
   g_clear_pointer (&findings->joy, g_array_unref);
   g_clear_pointer (&findings->what_if, g_array_unref);
+  g_clear_pointer (&findings->comparisons, tf_comparisons_free);
+  g_clear_pointer (&findings->hale_bins, g_ptr_array_unref);
+  g_clear_pointer (&findings->joy_bins, g_array_unref);
+  g_clear_pointer (&findings->scatter_bins, g_array_unref);
+  g_clear_pointer (&findings->drifts, g_array_unref);
   g_clear_pointer (&findings->dipoles, g_array_unref);
   g_clear_pointer (&findings->emergence, tf_emergence_free);
   g_clear_pointer (&findings->cautions, g_ptr_array_unref);
@@ -133,6 +143,117 @@ average_tilts (TfFindings *findings)
   findings->median_tilt_deg = tf_median (tilts, n);
 }
 
+/* The marks behind the picks: those of every passage that was picked. */
+static void
+count_marks (TfFindings *findings, const TfStudyRows *rows)
+{
+  guint n = tf_sample_get_n (findings->sample);
+  g_autoptr (GHashTable) picked = g_hash_table_new (NULL, NULL);
+  findings->marks = g_new0 (gint64, n + 1);
+  for (guint k = 0; k < n; k++)
+    {
+      const TfSampleRow *pick = tf_sample_get (findings->sample, k);
+      const TfRow *row = rows->rows != NULL ? g_ptr_array_index (rows->rows, pick->row) : NULL;
+      g_hash_table_add (picked, GUINT_TO_POINTER (pick->passage));
+      if (row == NULL)
+        continue;
+      findings->marks[k] = row->is_hint ? -row->mark : row->mark;
+      findings->n_other_floor += !tf_study_has_floor (row, findings->even_floor_gauss);
+      findings->simulated += row->simulated != FALSE;
+    }
+  for (guint k = 0; k < tf_sample_get_n (findings->every); k++)
+    {
+      const TfSampleRow *mark = tf_sample_get (findings->every, k);
+      if (!g_hash_table_contains (picked, GUINT_TO_POINTER (mark->passage)))
+        continue;
+      findings->n_marks += mark->origin != TF_ORIGIN_HINT;
+      findings->n_hints += mark->origin == TF_ORIGIN_HINT;
+    }
+}
+
+static TfFindings *
+findings_new (double floor)
+{
+  TfFindings *findings = g_new0 (TfFindings, 1);
+  findings->left_out = g_hash_table_new (g_str_hash, g_str_equal);
+  findings->passed_without = g_hash_table_new (g_str_hash, g_str_equal);
+  findings->cannot_say = g_hash_table_new (g_str_hash, g_str_equal);
+  findings->cautions = tf_notes_new ();
+  findings->even_floor_gauss = floor;
+  return findings;
+}
+
+static void
+judge (TfFindings *findings, const TfStudy *study)
+{
+  findings->verdicts = tf_study_judge (study, findings->sample, 0.0);
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
+    if (findings->verdicts[k].reason != NULL)
+      tf_study_count (findings->cannot_say, findings->verdicts[k].reason);
+}
+
+static void
+bin_shares (TfFindings *findings, const TfStudy *study)
+{
+  findings->hale_bins = g_ptr_array_new_with_free_func ((GDestroyNotify)g_array_unref);
+  for (const TfHaleQuantity *q = tf_hale_quantities; q->name != NULL; q++)
+    g_ptr_array_add (findings->hale_bins,
+                     tf_hale_bins (findings->sample, findings->verdicts, q, &study->hale, NULL));
+}
+
+/* Tilt by |lat|; what is left of it above the fit over all by separation. */
+static void
+bin_tilts (TfFindings *findings, const TfStudy *study)
+{
+  guint all = tf_sample_get_n (findings->sample), n = 0;
+  const TfJoyFit *fit = &g_array_index (findings->joy, TfJoyFit, findings->joy->len - 1);
+  g_autofree double *lat = g_new (double, all + 1), *tilt = g_new (double, all + 1),
+                    *separation = g_new (double, all + 1), *rest = g_new (double, all + 1);
+  for (guint k = 0; k < all; k++)
+    {
+      const TfSampleRow *row = tf_sample_get (findings->sample, k);
+      if (!tf_joy_uses (row, &findings->verdicts[k], &study->joy))
+        continue;
+      lat[n] = fabs (row->lat_deg);
+      tilt[n] = row->axis_tilt_deg;
+      separation[n] = row->separation_deg;
+      rest[n] = tilt[n] - tf_joy_tilt (fit, (TfJoyForm)study->joy.form, lat[n]);
+      n++;
+    }
+  findings->joy_bins = tf_bins (lat, tilt, n, 0.0, 50.0, 5.0, study->joy.level);
+  findings->scatter_bins = tf_bins (separation, rest, n, 0.0, 20.0, 1.0, study->joy.level);
+}
+
+static TfFindings *
+run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger, double floor)
+{
+  TfFindings *findings = findings_new (floor);
+  findings->every = tf_study_marks (study, rows, findings);
+  findings->sample = tf_study_picks (study, rows, findings->every, findings);
+  count_marks (findings, rows);
+  judge (findings, study);
+  findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);
+  findings->joy = fit_joy (findings, study);
+  findings->what_if = tf_study_what_if (study, rows, findings, ledger);
+  findings->comparisons = tf_compare (findings->sample, findings->verdicts, &study->joy);
+  bin_shares (findings, study);
+  bin_tilts (findings, study);
+  findings->drifts = tf_drifts (findings->sample, findings->verdicts, &study->drift);
+  findings->dipoles = tf_dipole_sums (findings->sample, findings->verdicts);
+  findings->emergence = tf_emergence_new (findings->every, &study->emergence);
+  average_tilts (findings);
+  tf_study_add_cautions (findings, study, rows);
+  return findings;
+}
+
+TfFindings *
+tf_study_run_sample (const TfStudy *study, const TfSample *all)
+{
+  g_return_val_if_fail (study != NULL && all != NULL, NULL);
+  const TfStudyRows rows = { NULL, (TfSample *)all };
+  return run_rows (study, &rows, NULL, NAN);
+}
+
 static gboolean
 complain_empty (const TfStudy *study, const GPtrArray *rows, TfLedger *ledger, GError **error)
 {
@@ -147,34 +268,30 @@ complain_empty (const TfStudy *study, const GPtrArray *rows, TfLedger *ledger, G
   return TRUE;
 }
 
+TfSample *
+tf_study_sample_rows (const GPtrArray *rows)
+{
+  TfSample *all = tf_sample_new ();
+  for (guint k = 0; k < rows->len; k++)
+    {
+      TfSampleRow row;
+      tf_study_row (g_ptr_array_index (rows, k), &row);
+      row.row = k;
+      tf_sample_add (all, &row);
+    }
+  return all;
+}
+
 TfFindings *
 tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
   const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints };
   double floor = tf_study_even_floor (ledger, NULL);
-  g_autoptr (GPtrArray) rows = tf_study_rows (ledger, &query, floor, error);
-  if (rows == NULL || complain_empty (study, rows, ledger, error))
+  g_autoptr (GPtrArray) found = tf_study_rows (ledger, &query, floor, error);
+  if (found == NULL || complain_empty (study, found, ledger, error))
     return NULL;
-
-  g_autoptr (TfFindings) findings = g_new0 (TfFindings, 1);
-  findings->sample = tf_sample_new ();
-  findings->left_out = g_hash_table_new (g_str_hash, g_str_equal);
-  findings->passed_without = g_hash_table_new (g_str_hash, g_str_equal);
-  findings->cannot_say = g_hash_table_new (g_str_hash, g_str_equal);
-  findings->cautions = tf_notes_new ();
-  findings->even_floor_gauss = floor;
-  tf_study_take_rows (findings, study, rows);
-  findings->verdicts = tf_study_judge (study, findings->sample, 0.0);
-  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
-    if (findings->verdicts[k].reason != NULL)
-      tf_study_count (findings->cannot_say, findings->verdicts[k].reason);
-  findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);
-  findings->joy = fit_joy (findings, study);
-  findings->what_if = tf_study_what_if (study, findings->sample);
-  findings->dipoles = tf_dipole_sums (findings->sample, findings->verdicts);
-  findings->emergence = tf_emergence_new (findings->sample, &study->emergence);
-  average_tilts (findings);
-  tf_study_add_cautions (findings, study, rows);
-  return g_steal_pointer (&findings);
+  g_autoptr (TfSample) all = tf_study_sample_rows (found);
+  const TfStudyRows rows = { found, all };
+  return run_rows (study, &rows, ledger, floor);
 }

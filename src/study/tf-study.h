@@ -6,20 +6,25 @@
 /* TfStudy: which rows are taken, by which conventions, and what the laws say of them.
  *
  * Mark conditions act first, then the sampling rule picks one mark a passage, then region
- * conditions act on the pick. Until passages exist every mark is its own passage, and the result
- * says so.
+ * conditions act on the pick. While marks are not linked every mark is its own passage, and the
+ * result says so.
  */
 
 #include <glib.h>
 #include <json-glib/json-glib.h>
 
+#include "tf-bin.h"
+#include "tf-compare.h"
 #include "tf-dipole-sum.h"
 #include "tf-divide.h"
+#include "tf-drift.h"
 #include "tf-emergence.h"
+#include "tf-hale-bin.h"
 #include "tf-hale.h"
 #include "tf-joy.h"
 #include "tf-ledger.h"
 #include "tf-sample.h"
+#include "tf-sampling.h"
 #include "tf-verdict.h"
 
 G_BEGIN_DECLS
@@ -31,6 +36,13 @@ typedef enum
   TF_STUDY_ERROR_EMPTY, /* nothing to judge: says what there is and how to take hints in */
 } TfStudyError;
 
+typedef enum
+{
+  TF_EPHEMERAL_OUT,   /* "left-out" */
+  TF_EPHEMERAL_IN,    /* "taken-in" */
+  TF_EPHEMERAL_ALONE, /* "alone" */
+} TfEphemeral;
+
 typedef struct
 {
   gboolean with_hints;       /* hints counted apart from marks */
@@ -38,8 +50,8 @@ typedef struct
   double mu_min;             /* 0 */
   double flux_min_mx;        /* 0 */
   double separation_min_deg; /* 0 */
-  gboolean with_ephemeral;
-  gboolean with_models; /* model maps */
+  int ephemeral;             /* TfEphemeral */
+  gboolean with_models;      /* model maps */
 } TfSieveParams;
 extern const TfOption tf_sieve_options[];
 
@@ -47,10 +59,12 @@ typedef struct
 {
   char *name;
   TfSieveParams sieve;
+  TfSamplingParams sampling;
   TfVerdictParams verdict;
   TfDivideParams divide;
   TfHaleParams hale;
   TfJoyParams joy;
+  TfDriftParams drift;
   TfEmergenceParams emergence;
   TfDivides *divides; /* the moved ones; their options are those of @divide. NULL: all computed */
   char *divides_shown; /* "24 N, 25 S": those moved with polarity in sight; NULL: none */
@@ -64,22 +78,40 @@ gboolean tf_study_read_divides (TfStudy *study, TfLedger *ledger, GError **error
 /** TfWhatIf: share that breaks and Joy slope under one other choice, all else as chosen. */
 typedef struct
 {
-  /* "as-chosen", "cycle-by-date-only", "cycle-by-latitude-alone", "minima-half-a-year-earlier",
-     "minima-half-a-year-later", "equator-zone-0", "equator-zone-3", "equator-zone-5",
-     "equator-zone-8", "least-squares", "robust", "steep-left-out", "separation-above-2.5",
-     "cmd-within-45", "hints-left-out" */
-  const char *name;
-  guint n, breaks;
+  const char *name;  /* one of tf_what_if_names() */
+  const char *title; /* msgid */
+  guint n, regions;  /* with a verdict */
+  guint breaks;
+  guint n_tilts; /* of the slope */
+  guint leaning; /* of n, on a provisional minimum */
   double share, slope;
+  /* Why there is no row: "not-measured" (rows lack measures with that floor), "not-linked" (every mark
+   * is its own passage), "no-hints", ...; NULL when there is one. */
+  const char *missing;
+  guint n_missing; /* rows that lack it */
 } TfWhatIf;
+
+/* Of the even floor, in the what-ifs about it. */
+#define TF_WHAT_IF_LOWER 0.8
+#define TF_WHAT_IF_HIGHER 1.2
+
+/** tf_what_if_names: every choice in the order in which they are shown, NULL-ended (transfer
+ * container). Names never change. A choice that is the study's own is left out of its rows, except
+ * the first, "as-chosen". */
+const char **tf_what_if_names (void);
+
+/** tf_what_if_missing: that reason in words. */
+const char *tf_what_if_missing (const char *missing);
 
 /** TfFindings: a sample with its verdicts and laws. */
 typedef struct
 {
-  TfSample *sample;
-  TfVerdict *verdicts;    /* one a sample row */
-  gint64 *marks;          /* local key of each row; hints negative */
-  guint n_marks, n_hints; /* among the rows */
+  TfSample *sample;    /* the picks */
+  TfVerdict *verdicts; /* one a sample row */
+  TfSample *every;     /* every mark that passes the mark conditions, picked or not */
+  TfSamplingTally sampling;
+  gint64 *marks;          /* local key of each pick's mark; hints negative */
+  guint n_marks, n_hints; /* of the passages that were picked */
   GHashTable *left_out;   /* why the sieve left a row out -> GUINT_TO_POINTER (count) */
   /* condition -> count of rows taken though they lack what it asks about */
   GHashTable *passed_without;
@@ -89,9 +121,18 @@ typedef struct
   GArray *hale;            /* TfHaleRow */
   GArray *joy;             /* TfJoyFit: each cycle and hemisphere, then all */
   GArray *what_if;         /* TfWhatIf */
-  GArray *dipoles;         /* TfDipoleSum */
-  TfEmergence *emergence;  /* of every mark that passes the mark conditions */
-  guint simulated;         /* rows from invented frames */
+  /* The cycle by date alone; by latitude, every unsure one read as the likelier; unsure left out:
+   * always shown together. */
+  TfWhatIf cycle_choice[3];
+  TfComparisons *comparisons;
+  GPtrArray *hale_bins; /* of GArray of TfHaleBin: one a row of tf_hale_quantities */
+  GArray *joy_bins;     /* TfBin: tilt by |lat|, of the picks that Joy's sample uses */
+  /* TfBin: what is left of the tilt above the fit, by separation (Fisher, Fan & Howard 1995) */
+  GArray *scatter_bins;
+  GArray *drifts;         /* TfDrift */
+  GArray *dipoles;        /* TfDipoleSum */
+  TfEmergence *emergence; /* of every mark that passes the mark conditions */
+  guint simulated;        /* rows from invented frames */
   double mean_tilt_deg, median_tilt_deg;
   TfNotes *cautions; /* "every-mark-is-its-own-passage", "instruments-unscaled-pooled", ... */
 } TfFindings;
@@ -103,6 +144,9 @@ double tf_study_even_floor (TfLedger *ledger, GError **error);
 GPtrArray *
 tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error);
 TfFindings *tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error);
+/** tf_study_run_sample: the same on rows that stand in no ledger (invented, or read elsewhere); row k's
+ * number must be k. */
+TfFindings *tf_study_run_sample (const TfStudy *study, const TfSample *all);
 void tf_findings_free (TfFindings *findings);
 
 /** tf_study_row: a ledger row as a sample row. */
@@ -118,7 +162,8 @@ TfVerdict tf_study_judge_measure (const TfStudy *study, const TfMeasure *measure
 /** tf_findings_build_json: the `laws` document of 6-commands. */
 void
 tf_findings_build_json (const TfFindings *findings, const TfStudy *study, JsonBuilder *builder);
-/** tf_findings_dup_words: the numbers as they would stand in a paper, in the current language. */
+/** tf_findings_dup_words: the numbers as they would stand in a paper, in the current language: a sentence
+ * a line. */
 char *tf_findings_dup_words (const TfFindings *findings, const TfStudy *study);
 /** tf_verdict_build_members: adds "polarity_tilt_deg", "cycle":{number, sure, reason} and
  * "hale":{verdict, reason, expected, readings} to the open object; readings: [{cycle, verdict}...]

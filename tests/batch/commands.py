@@ -363,7 +363,17 @@ def _():
     over_all = [row for row in found["hale"] if row["cycle"] is None and row["hemisphere"] == "both"]
     assert len(over_all) == 1 and over_all[0]["breaks"] >= 1, "the demo sun has an anti-Hale region"
     assert any(note["code"] == "every-mark-is-its-own-passage" for note in found["cautions"])
-    assert "Hale's law" in call("laws", "--with-hints", ledger).stdout
+    text = call("laws", "--with-hints", ledger).stdout
+    assert "Hale's law" in text and "What if" in text and "The cycle told in three ways" in text, text
+    assert all(line == line.rstrip() and len(line) <= 125 for line in text.splitlines()), "a line trails or is too long"
+    rows = text.split("Joy's law: ")[1].split("\n\n")[0].splitlines()[1:]
+    assert len({len(row) for row in rows}) == 1, "the table's columns shift"
+    choices = {row["choice"]: row for row in found["what_if"]}
+    assert choices["floor-a-fifth-lower"]["missing"] == "not-measured", choices["floor-a-fifth-lower"]
+    assert found["sample"]["rule"] == "greatest-flux" and found["sample"]["picks"] > 0
+    measured = document("laws", "--json", "--with-hints", "--measure-floors", ledger)
+    assert all(row["n"] > 0 for row in measured["what_if"] if row["choice"].startswith("floor-")), measured["what_if"]
+    assert document("laws", "--json", "--with-hints", "--sampling", "every-mark", ledger)["sample"]["rule"] == "every-mark"
 
 
 @test("export writes the four formats with every column in order, and refuses an ending it does not know")

@@ -342,7 +342,7 @@ test_words (void)
   g_autoptr (TfStudy) study = tf_study_new_default ();
   g_autoptr (TfFindings) found = run (&t, study);
   g_autofree char *words = tf_findings_dup_words (found, study);
-  static const char *const parts[] = { "5 marks and 0 hints",
+  static const char *const parts[] = { "5 picks, the mark of greatest flux of each passage, from 5 marks and 0 hints of 4",
                                        "Of 4 picks (3 regions)",
                                        "1 (25.0 %",
                                        "at least 20.0, at most 40.0 %",

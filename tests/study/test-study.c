@@ -158,6 +158,7 @@ main (int argc, char **argv)
   g_test_init (&argc, &argv, NULL);
   test_study_add_row ();
   test_study_add_ledger ();
+  test_study_add_sample ();
   int result = g_test_run ();
   remove_tree (state);
   return result;
