@@ -45,6 +45,8 @@ const TfNoteKind tf_note_kinds_region[] = {
   { "complexity-no-values", TF_NOTE_REASON,
     N_ ("Complexity is not given: the frame has no values inside the outline at the reference resolution of {0:.1f} Mm. Draw it larger, or "
         "choose another frame.") },
+  { "decisions-elsewhere", TF_NOTE_INFO,
+    N_ ("Operational decisions rest with the responsible national space-weather service and licensed staff.") },
   { "delta-apart", TF_NOTE_REASON,
     N_ ("No delta candidate: the nearest strong cores of opposite polarity are {0:.0f} Mm apart, more than {1:.0f} Mm.") },
   { "delta-candidate", TF_NOTE_CAUTION,

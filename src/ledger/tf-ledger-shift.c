@@ -16,6 +16,7 @@ tf_region_note_free (TfRegionNote *note)
 {
   if (note == NULL)
     return;
+  g_free (note->number);
   g_free (note->text);
   g_free (note->person);
   g_free (note->resolver);
@@ -39,8 +40,8 @@ from_wall (gint64 ms)
 #define NOTES_SQL                                                                                  \
   "SELECT n.region, n.person, n.text, p.name, coalesce ((SELECT max (a.wall) FROM act a JOIN deed " \
   "d ON d.replica = a.replica AND d.seq = a.seq AND d.person = n.person WHERE a.clock = n.clock "  \
-  "AND a.kind = 'note'), 0), r.text IS n.text, q.name FROM note n JOIN person p ON p.id = "        \
-  "n.person LEFT JOIN resolved r ON r.region = n.region AND r.author = n.person LEFT JOIN person " \
+  "AND a.kind = 'note'), 0), r.text IS n.text, q.name, g.number FROM note n JOIN person p "        \
+  "ON p.id = n.person JOIN region g ON g.id = n.region LEFT JOIN resolved r ON r.region = n.region AND r.author = n.person LEFT JOIN person " \
   "q ON q.id = r.person ORDER BY n.clock DESC, n.region"
 
 GPtrArray *
@@ -60,9 +61,79 @@ tf_ledger_notes (TfLedger *ledger, GError **error)
       note->written = from_wall (sqlite3_column_int64 (query, 4));
       note->resolved = sqlite3_column_int (query, 5);
       note->resolver = note->resolved ? g_strdup (tf_column_text (query, 6)) : NULL;
+      note->number = g_strdup (tf_column_text (query, 7));
       g_ptr_array_add (notes, note);
     }
   return more == 0 ? g_steal_pointer (&notes) : NULL;
+}
+
+GArray *
+tf_ledger_moments (TfLedger *ledger, const char *vantage, TfTime from, TfTime until, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL && vantage != NULL, NULL);
+  g_autoptr (GArray) moments = g_array_new (FALSE, FALSE, sizeof (TfMoment));
+  g_autoptr (sqlite3_stmt) query = tf_query (
+      ledger, error,
+      "SELECT f.id, f.time, EXISTS (SELECT 1 FROM mark m WHERE m.frame = f.id AND m.live = 1) "
+      "FROM frame f WHERE f.time BETWEEN ?1 AND ?2 AND f.vantage = ?3 AND f.refusal IS NULL AND "
+      "f.kind IN ('disk', 'cut-out') ORDER BY f.time, f.id",
+      "ddt", from.s, until.s, vantage);
+  int more = -1;
+  while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
+    {
+      TfMoment moment = { sqlite3_column_int64 (query, 0), { tf_column_double (query, 1) },
+                          sqlite3_column_int (query, 2) };
+      g_array_append_val (moments, moment);
+    }
+  return more == 0 ? g_steal_pointer (&moments) : NULL;
+}
+
+gint64
+tf_ledger_newest (TfLedger *ledger)
+{
+  g_return_val_if_fail (ledger != NULL, 0);
+  return tf_value (ledger, NULL, 0,
+                   "SELECT id FROM frame WHERE refusal IS NULL AND time IS NOT NULL AND kind IN "
+                   "('disk', 'cut-out') ORDER BY time DESC, id LIMIT 1",
+                   "");
+}
+
+void
+tf_region_class_free (TfRegionClass *entry)
+{
+  if (entry == NULL)
+    return;
+  g_free (entry->mw_class);
+  g_free (entry->person);
+  g_free (entry->evidence);
+  g_free (entry);
+}
+
+GPtrArray *
+tf_ledger_classes (TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, NULL);
+  g_autoptr (GPtrArray) classes
+      = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_region_class_free);
+  g_autoptr (sqlite3_stmt) query
+      = tf_query (ledger, error,
+                  "SELECT c.region, c.frame, f.time, c.class, p.name, c.evidence FROM class c JOIN "
+                  "frame f ON f.id = c.frame JOIN person p ON p.id = c.person ORDER BY f.time, "
+                  "c.clock",
+                  "");
+  int more = -1;
+  while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
+    {
+      TfRegionClass *entry = g_new0 (TfRegionClass, 1);
+      entry->region = sqlite3_column_int64 (query, 0);
+      entry->frame = sqlite3_column_int64 (query, 1);
+      entry->time.s = tf_column_double (query, 2);
+      entry->mw_class = g_strdup (tf_column_text (query, 3));
+      entry->person = g_strdup (tf_column_text (query, 4));
+      entry->evidence = g_strdup (tf_column_text (query, 5));
+      g_ptr_array_add (classes, entry);
+    }
+  return more == 0 ? g_steal_pointer (&classes) : NULL;
 }
 
 static char *

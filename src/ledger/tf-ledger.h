@@ -212,6 +212,7 @@ gboolean tf_ledger_end_bundle (TfLedger *ledger, gboolean ok, GError **error);
 typedef struct
 {
   gint64 region, author; /* local keys */
+  char *number;          /* of the region */
   char *text, *person;
   TfTime written;        /* when it was written; this machine's clock at the time */
   gboolean resolved;     /* somebody settled this text */
@@ -223,6 +224,28 @@ GPtrArray *tf_ledger_notes (TfLedger *ledger, GError **error);
 /** tf_ledger_resolve: the note of @author on @region, as it stands now, is settled (or, @resolved FALSE, open again). STATE without such a
  * note. Another text is open again by itself. */
 gboolean tf_ledger_resolve (TfLedger *ledger, gint64 region, gint64 author, gint64 person, gboolean resolved, GError **error);
+/** TfMoment: a frame of a vantage, without what it holds. */
+typedef struct
+{
+  gint64 frame;
+  TfTime time;
+  gboolean marked; /* somebody's outlines are on it */
+} TfMoment;
+/** tf_ledger_moments: (element-type TfMoment): usable disks and cut-outs of a vantage from @from to @until, in time order. */
+GArray *tf_ledger_moments (TfLedger *ledger, const char *vantage, TfTime from, TfTime until, GError **error);
+/** tf_ledger_newest: local key of the newest usable disk or cut-out; 0 without one. */
+gint64 tf_ledger_newest (TfLedger *ledger);
+
+/** TfRegionClass: what one person called a region on one frame. */
+typedef struct
+{
+  gint64 region, frame; /* local keys */
+  TfTime time;          /* of the frame */
+  char *mw_class, *person, *evidence;
+} TfRegionClass;
+void tf_region_class_free (TfRegionClass *entry);
+/** tf_ledger_classes: (element-type TfRegionClass): all that stand, oldest frame first; of one frame the last word last. */
+GPtrArray *tf_ledger_classes (TfLedger *ledger, GError **error);
 /** tf_ledger_hand_over: a shift ends at @time (its frame's or the clock's); cannot be undone, a later one takes its place. */
 gboolean tf_ledger_hand_over (TfLedger *ledger, gint64 person, TfTime time, GError **error);
 /** tf_ledger_last_shift: when the last hand-over was recorded, by this machine's clock; unknown without one. @person: (out) (nullable)
@@ -337,6 +360,7 @@ gboolean tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLedger, tf_ledger_close)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfFrameRow, tf_frame_row_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRegionClass, tf_region_class_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRegionNote, tf_region_note_free)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfRow, tf_row_free)
 G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfUndone, tf_undone_clear)
