@@ -6,8 +6,48 @@
 
 #include "tf-batch.h"
 #include "tf-export.h"
+#include "tf-sheets.h"
 
-/* export: the catalogue as a table. */
+/* export: the catalogue as a table, or a shift sheet. */
+
+/* The frame named by its path or its file name; 0 the newest, when none is named. */
+static gint64
+find_frame (TfLedger *ledger, const char *name, GError **error)
+{
+  if (name == NULL)
+    return 0;
+  g_autoptr (GPtrArray) frames = tf_ledger_frames (ledger, error);
+  for (guint k = 0; frames != NULL && k < frames->len; k++)
+    {
+      const TfFrameRow *row = g_ptr_array_index (frames, k);
+      g_autofree char *base = g_path_get_basename (row->path);
+      if (g_strcmp0 (name, row->path) == 0 || g_strcmp0 (name, base) == 0)
+        return row->id;
+    }
+  if (frames != NULL)
+    g_set_error (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, _ ("%s is not a frame of this ledger; name it as export --what marks does"),
+                 name);
+  return -1;
+}
+
+/* Reads only: a hand-over is recorded by the desk that hands over, in the window. */
+static int
+export_shift (const char *path, const char *out, const char *frame, const char *desk)
+{
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfLedger) ledger = tf_ledger_open (path, &error);
+  gint64 key = ledger != NULL ? find_frame (ledger, frame, &error) : -1;
+  g_autoptr (TfShift) shift = key >= 0 ? tf_shift_read (ledger, key, &error) : NULL;
+  if (shift == NULL || !tf_shift_write (out, shift, desk, &error))
+    {
+      tf_batch_say_error (error);
+      return g_error_matches (error, TF_CHART_ERROR, TF_CHART_ERROR_ENDING) ? TF_EXIT_CALL : TF_EXIT_NOTHING;
+    }
+  g_autofree char *line
+      = g_strdup_printf (ngettext ("%s: %u region", "%s: %u regions", shift->rows->len), out, shift->rows->len);
+  tf_batch_say (line);
+  return TF_EXIT_DONE;
+}
 
 int
 tf_verb_export (int argc, char **argv)
@@ -15,8 +55,12 @@ tf_verb_export (int argc, char **argv)
   gboolean with_hints = FALSE;
   g_autofree char *what = NULL;
   g_autofree char *source = NULL;
+  g_autofree char *frame = NULL;
+  g_autofree char *desk = NULL;
   const GOptionEntry entries[] = {
-    { "what", 0, 0, G_OPTION_ARG_STRING, &what, N_ ("marks (the only one so far)"), "WORD" },
+    { "what", 0, 0, G_OPTION_ARG_STRING, &what, N_ ("marks, a table; or shift, the shift sheet, to .pdf .svg .png or .json"), "WORD" },
+    { "frame", 0, 0, G_OPTION_ARG_STRING, &frame, N_ ("shift: the disk of this frame of the ledger, not of the newest"), "FILE" },
+    { "desk", 0, 0, G_OPTION_ARG_STRING, &desk, N_ ("shift: who hands over"), "NAME" },
     { "with-hints", 0, 0, G_OPTION_ARG_NONE, &with_hints, N_ ("hints too; their origin is “hint”"), NULL },
     { "source", 0, 0, G_OPTION_ARG_STRING, &source, N_ ("a line about the source, kept in the file"), "TEXT" },
     { NULL },
@@ -27,8 +71,10 @@ tf_verb_export (int argc, char **argv)
     return TF_EXIT_CALL;
   if (argc != 3)
     return tf_batch_usage ("export", _ ("Name a ledger and the file to write."));
+  if (g_strcmp0 (what, "shift") == 0)
+    return export_shift (argv[1], argv[2], frame, desk);
   if (what != NULL && g_strcmp0 (what, "marks") != 0)
-    return tf_batch_usage ("export", _ ("--what takes marks."));
+    return tf_batch_usage ("export", _ ("--what takes marks or shift."));
 
   g_autoptr (GError) error = NULL;
   g_autoptr (GPtrArray) keep = NULL;

@@ -36,3 +36,4 @@ void add_wings_tests (void);
 void add_overlay_tests (void);
 void add_plate_figure_tests (void);
 void add_laws_chart_tests (void);
+void add_sheet_tests (void);

@@ -11,6 +11,7 @@
 #include "tf-json.h"
 #include "tf-mount-wilson.h"
 #include "test-rows.h"
+#include "test-sheets.h"
 
 /* The names that other people's scripts rely on, in their order. */
 static const char *const names
@@ -323,7 +324,10 @@ main (int argc, char **argv)
   g_test_add_func ("/exchange/write/errors-name-the-file-and-leave-nothing", test_errors);
   g_test_add_func ("/exchange/mount-wilson/greek-and-names-are-taken-apart", test_mount_wilson);
   if (argc > 1)
-    add_row_tests (argv[1]);
+    {
+      add_row_tests (argv[1]);
+      add_sheet_tests (argv[1]);
+    }
   int result = g_test_run ();
   const char *remove[] = { "rm", "-rf", state, NULL };
   g_spawn_sync (NULL, (char **)remove, NULL, G_SPAWN_SEARCH_PATH, NULL, NULL, NULL, NULL, NULL, NULL);
