@@ -31,8 +31,10 @@ const TfVerb tf_verbs[] = {
     "tiltfield-run export demo.ledger regions.vot", tf_verb_export },
   { "check", "LEDGER", N_ ("Looks into a ledger: file, schema, journal, projections, and a sample of measurements made again."),
     "tiltfield-run check demo.ledger", tf_verb_check },
-  { "simulate", "frames|demo DIR", N_ ("Makes invented frames with their truth beside them."),
+  { "simulate", "frames|demo|cycles DIR", N_ ("Makes invented frames, or a table of whole cycles, with their truth beside them."),
     "tiltfield-run simulate frames suns --n-frames 4", tf_verb_simulate },
+  { "power", "", N_ ("Tells how many regions are needed to tell two slopes or two shares apart."),
+    "tiltfield-run power --what share --first 0.05 --second 0.08", tf_verb_power },
   { NULL },
 };
 

@@ -6,9 +6,28 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-batch.h"
+#include "tf-cycles.h"
 #include "tf-simulate.h"
 
-/* simulate: invented frames, their truth beside them. */
+/* simulate: invented frames or whole cycles, their truth beside them. */
+
+typedef enum
+{
+  FRAMES,
+  DEMO,
+  CYCLES,
+  NOTHING
+} What;
+
+static What
+what_of (const char *word)
+{
+  static const char *const words[] = { "frames", "demo", "cycles" };
+  for (int k = 0; k < NOTHING; k++)
+    if (strcmp (word, words[k]) == 0)
+      return (What)k;
+  return NOTHING;
+}
 
 int
 tf_verb_simulate (int argc, char **argv)
@@ -17,17 +36,26 @@ tf_verb_simulate (int argc, char **argv)
   tf_options_reset (tf_simulate_options, &params);
   GOptionContext *context = tf_batch_context ("simulate");
   g_option_context_add_group (context, tf_options_new_group (tf_simulate_options, &params, "sun", N_ ("the invented sun")));
+  TfCyclesParams cycles;
+  tf_options_reset (tf_cycles_options, &cycles);
+  g_option_context_add_group (context, tf_options_new_group (tf_cycles_options, &cycles, "cycles", N_ ("invented cycles")));
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
-  gboolean demo = argc == 3 && strcmp (argv[1], "demo") == 0;
-  if (argc != 3 || (!demo && strcmp (argv[1], "frames") != 0))
-    return tf_batch_usage ("simulate", _ ("Say “frames” (or “demo”, the frames of data-demo) and a folder."));
+  What what = argc == 3 ? what_of (argv[1]) : NOTHING;
+  if (what == NOTHING)
+    return tf_batch_usage ("simulate",
+                           _ ("Say “frames” (or “demo”, the frames of data-demo; or “cycles”, a table of regions) and a folder."));
 
   g_autoptr (GError) error = NULL;
   g_autoptr (TfWork) work = tf_batch_work_new (0);
-  if (demo ? tf_simulate_demo (argv[2], work, &error) : tf_simulate_frames (argv[2], &params, work, &error))
+  gboolean made = what == DEMO     ? tf_simulate_demo (argv[2], work, &error)
+                  : what == CYCLES ? tf_cycles_write (argv[2], &cycles, &error)
+                                   : tf_simulate_frames (argv[2], &params, work, &error);
+  if (made)
     {
-      g_autofree char *line = g_strdup_printf (_ ("%s: made, the truth beside each frame as .truth.json"), argv[2]);
+      g_autofree char *line = g_strdup_printf (what == CYCLES ? _ ("%s: cycles.csv made, the truth in cycles.truth.csv and .json")
+                                                              : _ ("%s: made, the truth beside each frame as .truth.json"),
+                                               argv[2]);
       tf_batch_say (line);
       return TF_EXIT_DONE;
     }

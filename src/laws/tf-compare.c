@@ -114,8 +114,8 @@ compare_slopes (const Work *work, TfComparison *row)
 
 /* -- the pairs ---------------------------------------------------------------------------------- */
 
-static void
-add_pair (const Work *work, const char *kind, TfGroup first, TfGroup second)
+static TfComparison
+compare (const Work *work, const char *kind, TfGroup first, TfGroup second)
 {
   TfComparison row = { .kind = kind, .groups = { first, second }, .share_p = NAN };
   for (int side = 0; side < 2; side++)
@@ -128,6 +128,21 @@ add_pair (const Work *work, const char *kind, TfGroup first, TfGroup second)
                                    row.regions[1] - row.breaks[1]);
   row.share_p_holm = NAN;
   compare_slopes (work, &row);
+  return row;
+}
+
+TfComparison
+tf_compare_groups (const TfSample *sample, const TfVerdict *verdicts, TfGroup first, TfGroup second,
+                   const TfJoyParams *joy)
+{
+  const Work work = { sample, verdicts, joy, NULL };
+  return compare (&work, NULL, first, second);
+}
+
+static void
+add_pair (const Work *work, const char *kind, TfGroup first, TfGroup second)
+{
+  TfComparison row = compare (work, kind, first, second);
   if (!isnan (row.share_p) || (row.n_tilts[0] >= MIN_REGIONS && row.n_tilts[1] >= MIN_REGIONS))
     g_array_append_val (work->out->rows, row);
 }

@@ -41,6 +41,10 @@ typedef struct
   double divider_mx;        /* the median flux; NaN when no row has a flux */
 } TfComparisons;
 
+/** tf_compare_groups: one pair, kind NULL, not adjusted. */
+TfComparison tf_compare_groups (const TfSample *sample, const TfVerdict *verdicts, TfGroup first,
+                                TfGroup second, const TfJoyParams *joy);
+
 TfComparisons *
 tf_compare (const TfSample *sample, const TfVerdict *verdicts, const TfJoyParams *joy);
 void tf_comparisons_free (TfComparisons *comparisons);

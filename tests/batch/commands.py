@@ -100,7 +100,7 @@ def _():
     verbs = call(code=2).stderr
     assert "inspect" in verbs and "laws" in verbs
     call("--help")
-    for verb in ("inspect", "where", "measure", "hints", "fill", "laws", "export", "check", "simulate"):
+    for verb in ("inspect", "where", "measure", "hints", "fill", "laws", "export", "check", "simulate", "power"):
         assert f"tiltfield-run {verb}" in call(verb, "--help").stdout, verb
 
 
@@ -342,6 +342,25 @@ def _():
         with open(os.path.join(work, "s.csv"), newline="", encoding="utf-8") as file:
             outs.append(sorted(row["mark"] for row in csv.DictReader(line for line in file if not line.startswith("#"))))
     assert outs[0] == outs[1]
+
+
+@test("simulate cycles writes a table and its truth; power gives a curve that rises")
+def _():
+    folder = os.path.join(work, "cycles")
+    call("simulate", "cycles", folder, "--cycle-regions", "30", "--slope", "0.5")
+    with open(os.path.join(folder, "cycles.csv"), newline="", encoding="utf-8") as file:
+        rows = list(csv.DictReader(line for line in file if not line.startswith("#")))
+    with open(os.path.join(folder, "cycles.truth.csv"), newline="", encoding="utf-8") as file:
+        truth = {row["region"]: row for row in csv.DictReader(file)}
+    with open(os.path.join(folder, "cycles.truth.json"), encoding="utf-8") as file:
+        told = json.load(file)
+    assert told["regions"] == len(truth) == 90 and told["marks"] == len(rows) and told["options"]["slope"] == 0.5, told
+    assert told["breaks"] == sum(row["breaks"] == "true" for row in truth.values()) and len(told["divides"]) == 3
+    for row in rows:
+        assert abs(float(row["axis_tilt_deg"]) - float(truth[row["region"]]["tilt_deg"])) < 8, row
+    curve = document("power", "--json", "--what", "share", "--first", "0.05", "--second", "0.3", "--least", "20", "--most", "160", "--runs", "40")
+    powers = [point["power"] for point in curve["points"]]
+    assert powers[-1] > 0.9 > powers[0] and 20 < curve["regions_needed"] < 160, curve
 
 
 @test("laws gives every key, counts hints apart, and without marks says what to do")

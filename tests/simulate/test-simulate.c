@@ -87,6 +87,7 @@ main (int argc, char **argv)
   add_sky_tests ();
   add_shoot_tests ();
   add_style_tests ();
+  test_simulate_add_cycles ();
   add_scenario_tests (argc > 1 ? argv[1] : NULL);
   return g_test_run ();
 }

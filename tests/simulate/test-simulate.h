@@ -9,6 +9,7 @@
 void add_sky_tests (void);
 void add_shoot_tests (void);
 void add_style_tests (void);
+void test_simulate_add_cycles (void);
 void add_scenario_tests (const char *demo_folder);
 
 /** two_poles: a bipole of 8 deg, poles of 1 and 1.4 deg, 5e21 Mx. */
