@@ -46,6 +46,7 @@ const TfNoteKind tf_note_kinds_laws[] = {
     N_ ("breaks Hale's law (cycle {0}, sure: {1} should lead in the north)") },
   { "hale-breaks-south", TF_NOTE_INFO,
     N_ ("breaks Hale's law (cycle {0}, sure: {1} should lead in the south)") },
+  { "hale-changes", TF_NOTE_REASON, N_ ("cannot say: fewer than four in five marks of its passage agree") },
   { "hale-cycle-unsure", TF_NOTE_REASON, N_ ("cannot say: the cycle is unsure") },
   { "hale-equator", TF_NOTE_REASON,
     N_ ("cannot say: the region lies too near the equator for its hemisphere to be told") },

@@ -9,10 +9,10 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-/* Columns 0 to 25; the measure's follow. Marks and hints give the same ones. */
+/* Columns 0 to 26; the measure's follow. Marks and hints give the same ones. */
 #define COMMON                                                                                     \
   " f.path, f.checksum, t.text, e.program, f.instrument, f.vantage, f.kind, f.time_source, "       \
-  "f.simulated, coalesce (v.id, 0), coalesce (v.same, 0), lower (hex (v.cid)), "
+  "f.simulated, coalesce (v.id, 0), coalesce (v.same, 0), lower (hex (v.cid)), coalesce (v.born, 0), "
 
 /* A mark that follow has not seen stands in the passage of its hint. */
 #define MARK_PASSAGE                                                                               \
@@ -53,7 +53,7 @@
 enum
 {
   FIRST_COMMON = 14,
-  FIRST_MEASURED = 26
+  FIRST_MEASURED = 27
 };
 
 static const char *
@@ -111,6 +111,7 @@ read_row (sqlite3_stmt *query, gboolean complexity)
   row->simulated = sqlite3_column_int (query, FIRST_COMMON + 8);
   row->passage_key = sqlite3_column_int64 (query, FIRST_COMMON + 9);
   row->same = sqlite3_column_int64 (query, FIRST_COMMON + 10);
+  row->born = sqlite3_column_int (query, FIRST_COMMON + 12);
   row->passage = row->passage_key != 0 ? dup_column (query, FIRST_COMMON + 11)
                                        : g_strdup (row->is_hint ? "" : row->mark_id);
   tf_measure_from_row (&row->measure, query, FIRST_MEASURED);

@@ -280,6 +280,7 @@ typedef struct
   char *passage;        /* content id; of a mark that follow has not seen: its own id; of a hint: "" */
   gint64 passage_key;   /* local key (tf-ledger-follow.h); 0 when follow has not seen it */
   gint64 same;          /* rows of one region share it, whatever their passages: local key of a passage; 0 with passage_key 0 */
+  int born;             /* TfEnd of its passage (tf-follow.h): unknown, on disk, over the limb, far side */
   const char *origin;   /* "hint", "kept as hinted", "changed", "drawn new", "outside": static */
   char *label, *note, *mw_class; /* "" where none */
   char *external; /* number in an official or other list; "" */

@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-follow.h"
 #include "tf-study-private.h"
 
 /* Ledger rows, measures and points as the rows laws are tested on. */
@@ -86,6 +87,7 @@ tf_study_row (const TfRow *row, TfSampleRow *out)
   guint32 region = row->is_hint ? alone : (guint32)row->region_key;
   out->region = row->same != 0 ? PASSAGE_CLUSTER + (guint32)row->same : region;
   out->passage = row->passage_key != 0 ? PASSAGE_CLUSTER + (guint32)row->passage_key : alone;
+  out->born = row->born == TF_END_UNKNOWN ? -1 : row->born == TF_END_ON_DISK;
 }
 
 void

@@ -69,6 +69,7 @@ main (int argc, char **argv)
   test_laws_add_verdict ();
   test_laws_add_proportion ();
   test_laws_add_hale ();
+  test_laws_add_held ();
   test_laws_add_joy ();
   test_laws_add_emergence ();
   test_laws_add_line ();

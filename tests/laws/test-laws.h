@@ -13,6 +13,7 @@ void test_laws_add_compare (void);
 void test_laws_add_cycle (void);
 void test_laws_add_emergence (void);
 void test_laws_add_hale (void);
+void test_laws_add_held (void);
 void test_laws_add_joy (void);
 void test_laws_add_line (void);
 void test_laws_add_proportion (void);
