@@ -89,5 +89,10 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "rows-with-other-floor", TF_NOTE_CAUTION,
     N_ ("{0} rows were measured with another floor than the study's even floor of {1:.1f} G; "
         "fluxes near the limb are not quite alike.") },
+  { "series-few-marks", TF_NOTE_REASON, N_ ("no mark away from the limb has a flux") },
+  { "series-no-decay", TF_NOTE_REASON, N_ ("no decay was seen: fewer than three marks, or the flux did not fall enough") },
+  { "series-no-meridian", TF_NOTE_REASON, N_ ("no mark near the central meridian has a tilt") },
+  { "series-no-rise", TF_NOTE_REASON, N_ ("no rise was seen: fewer than three marks, or the flux did not grow enough") },
+  { "series-no-tilt", TF_NOTE_REASON, N_ ("there is no tilt") },
   { NULL, TF_NOTE_INFO, NULL },
 };

@@ -105,6 +105,8 @@ char *tf_table_dup_text (const TfTable *table);
 
 /** tf_batch_print_findings: a study's findings for a person. */
 void tf_batch_print_findings (const TfFindings *findings, const TfStudy *study);
+/** tf_batch_export_series: one region through its passages into the table @out; returns the exit code. */
+int tf_batch_export_series (const char *path, const char *out, const char *region, const char *source);
 
 /* -- measures ---------------------------------------------------------------------------------- */
 /** TfFigures: what may stand beside a measure; each pair may be NULL. */

@@ -57,10 +57,12 @@ tf_verb_export (int argc, char **argv)
   g_autofree char *source = NULL;
   g_autofree char *frame = NULL;
   g_autofree char *desk = NULL;
+  g_autofree char *region = NULL;
   const GOptionEntry entries[] = {
-    { "what", 0, 0, G_OPTION_ARG_STRING, &what, N_ ("marks, a table; or shift, the shift sheet, to .pdf .svg .png or .json"), "WORD" },
+    { "what", 0, 0, G_OPTION_ARG_STRING, &what, N_ ("marks, a table; series, one region through its passages; or shift, the shift sheet, to .pdf .svg .png or .json"), "WORD" },
     { "frame", 0, 0, G_OPTION_ARG_STRING, &frame, N_ ("shift: the disk of this frame of the ledger, not of the newest"), "FILE" },
     { "desk", 0, 0, G_OPTION_ARG_STRING, &desk, N_ ("shift: who hands over"), "NAME" },
+    { "region", 0, 0, G_OPTION_ARG_STRING, &region, N_ ("series: number of the region, or first digits of a passage's id as follow prints it"), "WORD" },
     { "with-hints", 0, 0, G_OPTION_ARG_NONE, &with_hints, N_ ("hints too; their origin is “hint”"), NULL },
     { "source", 0, 0, G_OPTION_ARG_STRING, &source, N_ ("a line about the source, kept in the file"), "TEXT" },
     { NULL },
@@ -71,10 +73,15 @@ tf_verb_export (int argc, char **argv)
     return TF_EXIT_CALL;
   if (argc != 3)
     return tf_batch_usage ("export", _ ("Name a ledger and the file to write."));
+  gboolean series = g_strcmp0 (what, "series") == 0;
   if (g_strcmp0 (what, "shift") == 0)
     return export_shift (argv[1], argv[2], frame, desk);
-  if (what != NULL && g_strcmp0 (what, "marks") != 0)
-    return tf_batch_usage ("export", _ ("--what takes marks or shift."));
+  if (what != NULL && !series && g_strcmp0 (what, "marks") != 0)
+    return tf_batch_usage ("export", _ ("--what takes marks, series or shift."));
+  if (series != (region != NULL))
+    return tf_batch_usage ("export", _ ("--what series and --region belong together."));
+  if (series)
+    return tf_batch_export_series (argv[1], argv[2], region, source);
 
   g_autoptr (GError) error = NULL;
   g_autoptr (GPtrArray) keep = NULL;

@@ -16,6 +16,12 @@ typedef struct
  * rows. English. */
 GArray *tf_facts_new (const GArray *rows, const TfStudy *study, const char *source);
 
+/** tf_facts_add: one line more; takes @text. */
+void tf_facts_add (GArray *facts, const char *key, char *text);
+/** tf_export_write_facts: in the format that the ending of @path says. */
+gboolean
+tf_export_write_facts (const char *path, const GArray *rows, const GArray *facts, GError **error);
+
 /** TfFormat: one way to write a table. */
 typedef struct
 {

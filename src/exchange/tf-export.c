@@ -64,20 +64,25 @@ tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPt
 }
 
 gboolean
-tf_export_write (const char *path, const GArray *rows, const TfStudy *study, const char *source,
-                 GError **error)
+tf_export_write_facts (const char *path, const GArray *rows, const GArray *facts, GError **error)
 {
   for (guint k = 0; k < G_N_ELEMENTS (formats); k++)
     {
       gsize n = strlen (path), m = strlen (formats[k].ending);
-      if (n <= m || g_ascii_strcasecmp (path + n - m, formats[k].ending) != 0)
-        continue;
-      g_autoptr (GArray) facts = tf_facts_new (rows, study, source);
-      return formats[k].write (path, rows, facts, error);
+      if (n > m && g_ascii_strcasecmp (path + n - m, formats[k].ending) == 0)
+        return formats[k].write (path, rows, facts, error);
     }
   g_set_error (error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_FORMAT,
                _ ("%s: the ending of the name says how a table is written, and this one is none of "
                   ".csv, .vot, .fits, .json"),
                path);
   return FALSE;
+}
+
+gboolean
+tf_export_write (const char *path, const GArray *rows, const TfStudy *study, const char *source,
+                 GError **error)
+{
+  g_autoptr (GArray) facts = tf_facts_new (rows, study, source);
+  return tf_export_write_facts (path, rows, facts, error);
 }

@@ -21,8 +21,8 @@ clear_fact (gpointer data)
   g_free (((TfFact *)data)->text);
 }
 
-static void
-add (GArray *facts, const char *key, char *take)
+void
+tf_facts_add (GArray *facts, const char *key, char *take)
 {
   TfFact fact = { key, take };
   /* One fact is one line, whatever a source or a name holds. */
@@ -85,8 +85,8 @@ add_study (GArray *facts, const TfStudy *study)
     return;
   g_autofree char *hale = tf_options_dup_canonical (tf_verdict_options, &study->verdict, "hale");
   g_autofree char *divide = tf_options_dup_canonical (tf_divide_options, &study->divide, "cycle");
-  add (facts, "study", g_strdup (study->name != NULL ? study->name : "default"));
-  add (facts, "judging",
+  tf_facts_add (facts, "study", g_strdup (study->name != NULL ? study->name : "default"));
+  tf_facts_add (facts, "judging",
        g_strdup_printf ("%s; %s; divides %s", hale, divide,
                         study->divides != NULL ? "as a person set them" : "computed"));
 }
@@ -99,17 +99,17 @@ tf_facts_new (const GArray *rows, const TfStudy *study, const char *source)
   g_array_set_clear_func (facts, clear_fact);
   for (guint k = 0; k < rows->len; k++)
     hints += g_array_index (rows, TfExportRow, k).row->is_hint != 0;
-  add (facts, "program", g_strdup ("Tiltfield " TF_VERSION));
-  add (facts, "method", list_values (rows, method_of));
-  add (facts, "floor", list_values (rows, floor_of));
-  add (facts, "convention",
+  tf_facts_add (facts, "program", g_strdup ("Tiltfield " TF_VERSION));
+  tf_facts_add (facts, "method", list_values (rows, method_of));
+  tf_facts_add (facts, "floor", list_values (rows, floor_of));
+  tf_facts_add (facts, "convention",
        g_strdup ("longitudes west positive; leading is the western pole; axis_tilt_deg positive "
                  "when the leader is "
                  "equatorward, in both hemispheres; latitude and hemisphere are those of the "
                  "poles' midpoint; flux in Mx, "
                  "field in G, area in millionths of the hemisphere"));
   add_study (facts, study);
-  add (facts, "source", g_strdup (source != NULL && *source != '\0' ? source : "not told"));
-  add (facts, "rows", g_strdup_printf ("%u, of which hints %u", rows->len, hints));
+  tf_facts_add (facts, "source", g_strdup (source != NULL && *source != '\0' ? source : "not told"));
+  tf_facts_add (facts, "rows", g_strdup_printf ("%u, of which hints %u", rows->len, hints));
   return facts;
 }

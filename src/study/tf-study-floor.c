@@ -27,11 +27,8 @@ frame_floor (const TfFrameRow *frame)
 }
 
 double
-tf_study_even_floor (TfLedger *ledger, GError **error)
+tf_study_floor_of_frames (const GPtrArray *frames)
 {
-  g_autoptr (GPtrArray) frames = tf_ledger_frames (ledger, error);
-  if (frames == NULL)
-    return NAN;
   g_autoptr (GHashTable) by_instrument
       = g_hash_table_new_full (g_str_hash, g_str_equal, NULL, (GDestroyNotify)g_array_unref);
   for (guint k = 0; k < frames->len; k++)
@@ -57,6 +54,14 @@ tf_study_even_floor (TfLedger *ledger, GError **error)
                      tf_median ((const double *)((GArray *)floors)->data, ((GArray *)floors)->len));
   return greatest < 1 ? 1 : round (greatest);
 }
+
+double
+tf_study_even_floor (TfLedger *ledger, GError **error)
+{
+  g_autoptr (GPtrArray) frames = tf_ledger_frames (ledger, error);
+  return frames != NULL ? tf_study_floor_of_frames (frames) : NAN;
+}
+
 GPtrArray *
 tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error)
 {

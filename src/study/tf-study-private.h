@@ -41,6 +41,8 @@ void tf_study_build_interval (JsonBuilder *builder, const char *key, TfInterval 
 void tf_study_build_cell (JsonBuilder *builder, int cycle, int hemisphere);
 void tf_study_build_parts (JsonBuilder *builder, const TfFindings *findings);
 
+/** tf_study_floor_of_frames: the even floor of those TfFrameRow, G; NaN without. */
+double tf_study_floor_of_frames (const GPtrArray *frames);
 /** tf_study_what_if: (element-type TfWhatIf): the share and the slope under other choices, each
  * alone, and into findings->cycle_choice the three ways of telling a cycle. @ledger: (nullable): for
  * what needs other measures or the hints. */

@@ -157,6 +157,7 @@ main (int argc, char **argv)
   g_setenv ("XDG_STATE_HOME", state, TRUE);
   g_test_init (&argc, &argv, NULL);
   test_study_add_row ();
+  test_study_add_series ();
   test_study_add_ledger ();
   test_study_add_sample ();
   test_study_add_shift ();
