@@ -15,7 +15,7 @@ import time
 SHARES = {
     "build": 150, "build sanitize": 150,
     "base": 5, "sun": 10, "frame": 40, "laws": 15, "region": 75, "passage": 10, "ledger": 45, "intake": 45, "study": 15,
-    "chart": 15, "exchange": 10, "simulate": 30, "batch": 40, "desk": 30, "house": 15, "outside": 120, "fuzz": 60,
+    "chart": 15, "exchange": 10, "simulate": 30, "batch": 60, "desk": 30, "house": 15, "outside": 120, "fuzz": 60,
     "window": 240, "bench": 30, "bench": 20,
 }
 SANITIZED = {"base", "sun", "frame", "laws", "region", "passage", "ledger", "intake", "study", "chart", "exchange", "simulate", "fuzz"}

@@ -100,7 +100,7 @@ def _():
     verbs = call(code=2).stderr
     assert "inspect" in verbs and "laws" in verbs
     call("--help")
-    for verb in ("inspect", "where", "measure", "hints", "fill", "laws", "export", "check", "simulate", "power"):
+    for verb in ("inspect", "where", "measure", "hints", "fill", "gather", "follow", "laws", "export", "check", "simulate", "power"):
         assert f"tiltfield-run {verb}" in call(verb, "--help").stdout, verb
 
 

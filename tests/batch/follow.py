@@ -1,0 +1,206 @@
+#!/usr/bin/python3
+# SPDX-License-Identifier: GPL-3.0-or-later
+# SPDX-FileCopyrightText: The Tiltfield developers
+"""follow.py TILTFIELD_RUN SOURCE: passages of the demo frames against their truth, as other people's scripts see them. Prints TAP."""
+import csv
+import glob
+import json
+import math
+import os
+import re
+import shutil
+import subprocess
+import sys
+import tempfile
+from datetime import datetime
+
+RUN, TOP = sys.argv[1], sys.argv[2]
+FRAMES = os.path.join(TOP, "data-demo", "frames")
+work = tempfile.mkdtemp(prefix="tiltfield-follow-")
+os.environ["XDG_STATE_HOME"] = os.path.join(work, "state")
+LEDGER = os.path.join(work, "demo.ledger")
+number = failed = 0
+
+
+def test(sentence):
+    def wrap(function):
+        global number, failed
+        number += 1
+        try:
+            function()
+        except Exception as error:  # every failure must become a line
+            failed += 1
+            print(f"not ok {number} - {sentence}\n#   {type(error).__name__}: {error}", flush=True)
+        else:
+            print(f"ok {number} - {sentence}", flush=True)
+        return function
+    return wrap
+
+
+def call(*words, code=0):
+    done = subprocess.run([RUN, *words], stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True, timeout=120)
+    assert done.returncode == code, f"{' '.join(words)}: exit {done.returncode}, expected {code}: {done.stderr[-400:]}"
+    return done
+
+
+def follow(ledger):
+    return json.loads(call("follow", ledger, "--json", "--with-hints").stdout)
+
+
+def hints(ledger):
+    """Hint id -> (name of the true source it lies on, or None; frame)."""
+    out = os.path.join(work, "hints.csv")
+    call("export", ledger, out, "--with-hints")
+    truth = {}
+    for path in glob.glob(os.path.join(FRAMES, "*.truth.json")):
+        with open(path, encoding="utf-8") as file:
+            truth[os.path.basename(path).replace(".truth.json", ".fits")] = json.load(file)["sources"]
+    found = {}
+    with open(out, encoding="utf-8") as file:
+        for row in csv.DictReader(line for line in file if not line.startswith("#")):
+            lon, lat = float(row["carrington_lon_deg"]), float(row["lat_deg"])
+            best = min(truth[row["frame"]], key=lambda s: apart(s, lon, lat))
+            found[row["mark"]] = (best["name"] if apart(best, lon, lat) < 4 else None, row["frame"])
+    return found
+
+
+def apart(source, lon, lat):
+    west = (source["carrington_lon_deg"] - lon + 180) % 360 - 180
+    return math.hypot(west * math.cos(math.radians(lat)), source["lat_deg"] - lat)
+
+
+call("fill", LEDGER, FRAMES)
+first = follow(LEDGER)
+sources = hints(LEDGER)
+
+
+@test("follow and gather have help with an example; wrong words exit 2, no ledger 3")
+def _():
+    for verb in ("follow", "gather"):
+        assert f"tiltfield-run {verb}" in call(verb, "--help").stdout
+        call(verb, code=2)
+    call("follow", LEDGER, "more", code=2)
+    call("follow", LEDGER, "--gap-days", "30", code=2)
+    call("follow", os.path.join(work, "none.ledger"), code=3)
+    call("gather", os.path.join(work, "all.ledger"), os.path.join(work, "none.ledger"), code=3)
+    assert not os.path.exists(os.path.join(work, "all.ledger")), "a ledger was made of parts that are not there"
+
+
+@test("no passage of the demo frames holds two regions, and each region has one passage a vantage")
+def _():
+    seen = {}
+    for passage in first["passages"]:
+        names = {sources[mark][0] for mark in passage["members"]} - {None}
+        assert len(names) <= 1, (passage["passage"], names)
+        for name in names:
+            if passage["first_time"].startswith("2013-10"):
+                seen.setdefault((name, passage["vantage"]), []).append(passage)
+    assert len(seen) >= 15, sorted(seen)
+    for key, passages in seen.items():
+        assert len(passages) == 1, (key, [p["first_time"] for p in passages])
+    marks = [mark for passage in first["passages"] for mark in passage["members"]]
+    assert len(marks) == len(set(marks)) == first["sightings"] == len(sources)
+
+
+@test("what the far vantage sees is one region with what the Earth sees of it")
+def _():
+    earth = {}
+    for passage in first["passages"]:
+        names = {sources[mark][0] for mark in passage["members"]} - {None}
+        if passage["vantage"] == "earth" and passage["first_time"].startswith("2013-10") and names:
+            earth[names.pop()] = passage["passage"]
+    far = [p for p in first["passages"] if p["vantage"] != "earth"]
+    assert far, "no passage from afar"
+    both = 0
+    for passage in far:
+        name = ({sources[mark][0] for mark in passage["members"]} - {None}).pop()
+        if name in earth:
+            both += 1
+            assert passage["first_passage_of_region"] == earth[name], name
+    assert both >= 5, both
+
+
+@test("the region that emerges is born on the disk, none other of those days is")
+def _():
+    born = [p for p in first["passages"] if p["born"] == "on disk"]
+    with open(os.path.join(FRAMES, "brindle-20131009-0600.truth.json"), encoding="utf-8") as file:
+        growing = {s["name"] for s in json.load(file)["sources"] if 0 < s.get("growth", 1) < 1}
+    assert growing, "no region grows in the demo"
+    names = {sources[mark][0] for passage in born for mark in passage["members"]}
+    assert len(born) == 1 and names <= growing, (names, growing)
+
+
+@test("following again changes nothing; parts that are gathered are followed to the same passages")
+def _():
+    again = follow(LEDGER)
+    assert again["fresh"] == 0 and not again["changed"]
+    assert again["passages"] == first["passages"]
+    parts = [os.path.join(work, f"part{k}.ledger") for k in (1, 2)]
+    for k, part in enumerate(parts, 1):
+        call("fill", part, FRAMES, "--part", f"{k}/2")
+    whole = os.path.join(work, "gathered.ledger")
+    # A ledger that was followed half filled is followed on to the same end.
+    call("gather", whole, parts[1])
+    call("follow", whole)
+    said = json.loads(call("gather", whole, parts[0], parts[1], "--json").stdout)
+    assert said["parts"] == 2 and said["failed"] == 0 and said["frames"] > 0
+    gathered = follow(whole)
+    assert gathered["passages"] == first["passages"]
+    assert gathered["returns"] == first["returns"]
+    call("check", whole)
+
+
+@test("the series of the growing region: columns, one even floor, and the rate at which it was made to grow")
+def _():
+    born = next(p for p in first["passages"] if p["born"] == "on disk")
+    name = next(sources[mark][0] for mark in born["members"])
+    out = os.path.join(work, "series.csv")
+    call("export", LEDGER, out, "--what", "series", "--region", born["passage"][:12])
+    with open(out, encoding="utf-8") as file:
+        lines = file.read().splitlines()
+    facts = {line[2:].split(": ", 1)[0]: line.split(": ", 1)[1] for line in reversed(lines) if line.startswith("# ")}
+    rows = [row for row in csv.DictReader(line for line in lines if not line.startswith("#")) if row["vantage"] == "earth"]
+    assert len(rows) == len(born["members"]) and {row["floor_kind"] for row in rows} == {"even"}
+    assert len({row["floor_gauss"] for row in rows}) == 1 and "nan" not in " ".join(lines).lower()
+    for column in ("flux_positive_mx", "flux_negative_mx", "separation_deg", "axis_tilt_deg", "tilt_sigma_deg", "mu"):
+        assert all(row[column] for row in rows if float(row["mu"]) > 0.5), column
+    sure = [row for row in rows if row["leading_sure"] == "true" and row["cycle_sure"] == "true"]
+    assert sure and all(row["polarity_tilt_deg"] for row in sure)
+    rate, window = facts["emergence rate"].split(" Mx/h, ", 1)
+    begin, end = re.search(r"from (\S+)Z to (\S+)Z", window).groups()
+    true = {}
+    for path in glob.glob(os.path.join(FRAMES, "brindle-2013*.truth.json")):
+        with open(path, encoding="utf-8") as file:
+            frame = json.load(file)
+        source = next((s for s in frame["sources"] if s["name"] == name), None)
+        if source and not path.endswith("continuum.truth.json"):
+            true[frame["time"][:19]] = source["flux_positive_mx"] + source["flux_negative_mx"]
+    hours = (datetime.fromisoformat(end) - datetime.fromisoformat(begin)).total_seconds() / 3600
+    expected = (true[end] - true[begin]) / hours
+    assert abs(float(rate) / expected - 1) < 0.15, (rate, expected)
+
+
+@test("a series that cannot be written says why")
+def _():
+    out = os.path.join(work, "none.csv")
+    call("export", LEDGER, out, "--what", "series", code=2)
+    call("export", LEDGER, out, "--region", "T2013-0001", code=2)
+    said = call("export", LEDGER, out, "--what", "series", "--region", "T1999-0001", code=3).stderr
+    assert "T1999-0001" in said and "follow" in said
+    born = next(p for p in first["passages"] if p["born"] == "on disk")
+    call("export", LEDGER, os.path.join(work, "series.docx"), "--what", "series", "--region", born["passage"][:12], code=2)
+    call("export", LEDGER, os.path.join(work, "series.vot"), "--what", "series", "--region", born["passage"][:12])
+    with open(os.path.join(work, "series.vot"), encoding="utf-8") as file:
+        assert "emergence rate" in file.read()
+
+
+@test("regions and passages are counted in laws, not marks")
+def _():
+    sample = json.loads(call("laws", LEDGER, "--with-hints", "--json").stdout)["sample"]
+    assert sample["passages"] <= first["n_passages"] < first["sightings"], sample
+    assert sample["regions"] <= first["n_regions"], sample
+
+
+shutil.rmtree(work)
+print(f"1..{number}")
+sys.exit(1 if failed else 0)
