@@ -22,6 +22,9 @@ TfDivides *tf_study_dup_divides (const TfStudy *study);
 /** tf_study_judge: (transfer full): a verdict for each row, as if every minimum had come @later_s
  * seconds later. */
 TfVerdict *tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s);
+/** tf_study_hold: cannot say where the passage changes. That is told once, under the study as
+ * chosen: another cycle turns all marks of a passage alike. */
+void tf_study_hold (const TfFindings *findings, const TfSample *sample, TfVerdict *verdicts);
 /** tf_study_marks: (transfer full): the rows that pass the mark conditions. @findings: (nullable):
  * counts what is left out by reason. */
 TfSample *tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings);

@@ -447,6 +447,8 @@ fill_from (TfWhatIf *row, const Variant *v, From from, const TfStudyRows *rows,
   g_autoptr (TfSample) part = v->bracketed ? keep (v, picks) : NULL;
   const TfSample *sample = part != NULL ? part : picks != NULL ? picks : findings->sample;
   g_autofree TfVerdict *verdicts = tf_study_judge (&v->study, sample, v->later_s);
+  if (v->study.sampling.rule != TF_SAMPLING_EVERY)
+    tf_study_hold (findings, sample, verdicts);
   fill_row (row, v, sample, verdicts);
 }
 

@@ -74,6 +74,8 @@ tf_findings_free (TfFindings *findings)
   g_clear_pointer (&findings->sample, tf_sample_free);
   g_clear_pointer (&findings->every, tf_sample_free);
   g_free (findings->verdicts);
+  g_free (findings->held);
+  g_clear_pointer (&findings->changing, g_hash_table_unref);
   g_free (findings->marks);
   g_clear_pointer (&findings->left_out, g_hash_table_unref);
   g_clear_pointer (&findings->passed_without, g_hash_table_unref);
@@ -178,15 +180,44 @@ findings_new (double floor)
   findings->left_out = g_hash_table_new (g_str_hash, g_str_equal);
   findings->passed_without = g_hash_table_new (g_str_hash, g_str_equal);
   findings->cannot_say = g_hash_table_new (g_str_hash, g_str_equal);
+  findings->changing = g_hash_table_new (g_direct_hash, g_direct_equal);
   findings->cautions = tf_notes_new ();
   findings->even_floor_gauss = floor;
   return findings;
+}
+
+void
+tf_study_hold (const TfFindings *findings, const TfSample *sample, TfVerdict *verdicts)
+{
+  for (guint k = 0; k < tf_sample_get_n (sample); k++)
+    if (verdicts[k].kind != TF_VERDICT_CANNOT_SAY
+        && g_hash_table_contains (findings->changing,
+                                  GUINT_TO_POINTER (tf_sample_get (sample, k)->passage)))
+      {
+        verdicts[k].kind = TF_VERDICT_CANNOT_SAY;
+        verdicts[k].reason = "hale-changes";
+      }
+}
+
+/* Under "every mark" each speaks for itself. */
+static void
+hold (TfFindings *findings, const TfStudy *study)
+{
+  if (study->sampling.rule == TF_SAMPLING_EVERY)
+    return;
+  g_autofree TfVerdict *every = tf_study_judge (study, findings->every, 0.0);
+  findings->held = tf_held (findings->every, every, findings->sample, findings->verdicts);
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
+    if (g_strcmp0 (findings->verdicts[k].reason, "hale-changes") == 0)
+      g_hash_table_add (findings->changing,
+                        GUINT_TO_POINTER (tf_sample_get (findings->sample, k)->passage));
 }
 
 static void
 judge (TfFindings *findings, const TfStudy *study)
 {
   findings->verdicts = tf_study_judge (study, findings->sample, 0.0);
+  hold (findings, study);
   for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
     if (findings->verdicts[k].reason != NULL)
       tf_study_count (findings->cannot_say, findings->verdicts[k].reason);

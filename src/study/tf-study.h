@@ -21,6 +21,7 @@
 #include "tf-emergence.h"
 #include "tf-hale-bin.h"
 #include "tf-hale.h"
+#include "tf-held.h"
 #include "tf-joy.h"
 #include "tf-ledger.h"
 #include "tf-sample.h"
@@ -108,6 +109,8 @@ typedef struct
 {
   TfSample *sample;    /* the picks */
   TfVerdict *verdicts; /* one a sample row */
+  TfHeld *held;        /* likewise: how far the pick's passage holds to its verdict; NULL when every mark is a pick */
+  GHashTable *changing; /* passages in which too few marks agree */
   TfSample *every;     /* every mark that passes the mark conditions, picked or not */
   TfSamplingTally sampling;
   gint64 *marks;          /* local key of each pick's mark; hints negative */

@@ -253,9 +253,44 @@ test_names (void)
     g_assert_true (g_strv_contains (names, kept[k]));
 }
 
+/* Passages whose leader is another on some days: the pick stands while four of five marks say what it
+ * says; under "every mark" each speaks for itself. */
+static void
+test_held (void)
+{
+  g_autoptr (TfSample) steady = two_cycles ();
+  g_autoptr (TfSample) sample = tf_sample_new ();
+  for (guint k = 0; k < tf_sample_get_n (steady); k++)
+    {
+      TfSampleRow row = *tf_sample_get (steady, k);
+      guint day = k % 11;
+      if ((row.passage == 0 && day >= 6) || (row.passage == 1 && day == 8))
+        row.leading_polarity = -row.leading_polarity;
+      tf_sample_add (sample, &row);
+    }
+  g_autoptr (TfStudy) study = quick_study ();
+  g_autoptr (TfFindings) found = tf_study_run_sample (study, sample);
+  g_assert_cmpuint (GPOINTER_TO_UINT (g_hash_table_lookup (found->cannot_say, "hale-changes")), ==, 1);
+  for (guint k = 0; k < tf_sample_get_n (found->sample); k++)
+    {
+      guint32 passage = tf_sample_get (found->sample, k)->passage;
+      g_assert_cmpint (found->verdicts[k].kind == TF_VERDICT_CANNOT_SAY, ==, passage == 0);
+      g_assert_cmpuint (found->held[k].of, ==, 9);
+      g_assert_cmpuint (found->held[k].held, ==, passage == 0 ? 5 : passage == 1 ? 8 : 9);
+    }
+  const TfHaleRow *all = &g_array_index (found->hale, TfHaleRow, found->hale->len - 1);
+  g_assert_cmpuint (all->n, ==, 29);
+  g_assert_cmpuint (what_if (found, "as-chosen")->n, ==, 29);
+  study->sampling.rule = TF_SAMPLING_EVERY;
+  g_autoptr (TfFindings) every = tf_study_run_sample (study, sample);
+  g_assert_null (every->held);
+  g_assert_null (g_hash_table_lookup (every->cannot_say, "hale-changes"));
+}
+
 void
 test_study_add_sample (void)
 {
+  g_test_add_func ("/study/sample/a-passage-holds-to-its-verdict", test_held);
   g_test_add_func ("/study/sampling/one-pick-a-passage", test_one_pick_a_passage);
   g_test_add_func ("/study/sampling/mark-conditions-rule-region-conditions",
                    test_order_of_conditions);
