@@ -57,6 +57,10 @@ struct _TfLawsCharts
   TfChartPoints residuals; /* separation, tilt less the fit's */
   GArray *separation_bins; /* TfBin of the residuals */
   double separation_top;
+
+  TfEmergenceParams emergence;
+  guint n_born;
+  GArray *ages[TF_EMERGENCE_SIDES]; /* of TfEmergenceAge */
 };
 
 /** tf_laws_fit_tilt: the tilt that the fit puts at |lat|, deg; @slope may be another one. */
@@ -94,6 +98,15 @@ char *tf_separation_plot_dup_description (const TfLawsCharts *charts);
 double tf_separation_plot_height (const TfLawsCharts *charts, const TfChartStyle *style,
                                   double width);
 gboolean tf_separation_plot_has (const TfLawsCharts *charts);
+
+void tf_emergence_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style,
+                             TfArea area);
+int tf_emergence_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                           double x, double y, int after);
+char *tf_emergence_plot_dup_description (const TfLawsCharts *charts);
+double tf_emergence_plot_height (const TfLawsCharts *charts, const TfChartStyle *style,
+                                 double width);
+gboolean tf_emergence_plot_has (const TfLawsCharts *charts);
 
 #pragma GCC visibility pop
 

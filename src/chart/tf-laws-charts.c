@@ -23,6 +23,8 @@ const TfLawsChart tf_laws_chart_table[] = {
   { "separation", N_ ("Scatter about Joy’s law against separation"), tf_separation_plot_draw,
     tf_separation_plot_hit, tf_separation_plot_dup_description, tf_separation_plot_height,
     tf_separation_plot_has },
+  { "emergence", N_ ("Since emergence"), tf_emergence_plot_draw, tf_emergence_plot_hit,
+    tf_emergence_plot_dup_description, tf_emergence_plot_height, tf_emergence_plot_has },
   { NULL },
 };
 
@@ -164,6 +166,18 @@ frame_separations (TfLawsCharts *charts)
   charts->separation_top = isfinite (top) ? CLAMP (ceil (top), 6, 20) : 12;
 }
 
+static void
+take_emergence (TfLawsCharts *charts, const TfEmergence *emergence)
+{
+  for (int side = 0; side < TF_EMERGENCE_SIDES; side++)
+    charts->ages[side] = emergence != NULL ? g_array_copy (emergence->ages[side])
+                                           : g_array_new (FALSE, FALSE, sizeof (TfEmergenceAge));
+  if (emergence == NULL)
+    return;
+  charts->emergence = emergence->params;
+  charts->n_born = emergence->passages;
+}
+
 static double
 mean_of (const double *values, guint n)
 {
@@ -185,6 +199,7 @@ tf_laws_charts_new (const TfLawsFacts *facts)
   charts->all_relations = facts->all_relations;
   charts->fit = find_fit (facts);
   take_hale (charts, facts);
+  take_emergence (charts, facts->emergence);
   points_init (&charts->tilts, charts->n);
   points_init (&charts->residuals, charts->n);
   g_autofree double *tilts = g_new (double, charts->n + 1);
@@ -212,6 +227,8 @@ charts_clear (gpointer data)
   TfLawsCharts *charts = data;
   g_free (charts->rows);
   g_array_unref (charts->hale);
+  for (int side = 0; side < TF_EMERGENCE_SIDES; side++)
+    g_array_unref (charts->ages[side]);
   g_array_unref (charts->lat_bins);
   g_array_unref (charts->separation_bins);
   g_free (charts->tilts.xy);

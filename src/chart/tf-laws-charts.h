@@ -13,6 +13,7 @@
  */
 
 #include "tf-chart.h"
+#include "tf-emergence.h"
 #include "tf-hale.h"
 #include "tf-joy.h"
 
@@ -25,6 +26,7 @@ typedef struct
   const TfVerdict *verdicts; /* one a row */
   const GArray *hale;        /* TfHaleRow */
   const GArray *joy;         /* TfJoyFit; that of all cycles and both hemispheres is drawn */
+  const TfEmergence *emergence; /* nullable */
   TfHaleParams hale_params;
   TfJoyParams joy_params;
   gboolean all_relations;    /* every published relation; else the first magnetic and the first of

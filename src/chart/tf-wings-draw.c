@@ -69,22 +69,19 @@ draw_frame_line (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, T
 
 /* Symbols at the edge of the view may reach over it by their own size. */
 static void
-draw_inside (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area, TfArea plot)
+find_seen (const TfWings *wings, TfArea plot, guint *first, guint *end)
 {
   double reach = 8 / plot.width * (wings->to_year - wings->from_year);
-  guint first = tf_wings_first (wings, wings->from_year - reach),
-        end = tf_wings_first (wings, wings->to_year + reach);
+  *first = tf_wings_first (wings, wings->from_year - reach);
+  *end = tf_wings_first (wings, wings->to_year + reach);
+}
+
+static void
+clip (cairo_t *cr, TfArea area)
+{
   cairo_save (cr);
-  cairo_rectangle (cr, plot.x, plot.y, plot.width, plot.height);
+  cairo_rectangle (cr, area.x, area.y, area.width, area.height);
   cairo_clip (cr);
-  if (tf_wings_is_dense (wings, style, area))
-    tf_wings_draw_density (cr, wings, style, plot, first, end);
-  else
-    tf_wings_draw_dots (cr, wings, style, plot, first, end);
-  tf_wings_draw_divides (cr, wings, style, plot);
-  draw_pick (cr, wings, style, plot);
-  draw_chosen (cr, wings, style, plot, first, end);
-  cairo_restore (cr);
 }
 
 static void
@@ -99,21 +96,57 @@ draw_empty (cairo_t *cr, const TfChartStyle *style, TfArea plot)
   tf_chart_text (cr, style, x, y, 0.5, 0.5, style->faint, text);
 }
 
+static gboolean
+is_large_enough (TfArea area)
+{
+  return area.width > 4 && area.height > 4;
+}
+
 void
-tf_wings_draw (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area)
+tf_wings_draw_ground (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area)
 {
   g_return_if_fail (cr != NULL && wings != NULL && style != NULL);
-  if (!(area.width > 4) || !(area.height > 4))
+  if (!is_large_enough (area))
     return;
   TfArea plot = tf_wings_plot (wings, style, area);
-  cairo_save (cr);
-  cairo_rectangle (cr, area.x, area.y, area.width, area.height);
-  cairo_clip (cr);
+  guint first, end;
+  find_seen (wings, plot, &first, &end);
+  clip (cr, area);
   tf_wings_draw_cycles (cr, wings, style, plot);
   tf_wings_draw_scale (cr, wings, style, plot);
-  draw_inside (cr, wings, style, area, plot);
-  draw_frame_line (cr, wings, style, plot);
+  clip (cr, plot);
+  if (tf_wings_is_dense (wings, style, area))
+    tf_wings_draw_density (cr, wings, style, plot, first, end);
+  else
+    tf_wings_draw_dots (cr, wings, style, plot, first, end);
+  cairo_restore (cr);
   if (wings->n == 0)
     draw_empty (cr, style, plot);
   cairo_restore (cr);
+}
+
+void
+tf_wings_draw_over (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area)
+{
+  g_return_if_fail (cr != NULL && wings != NULL && style != NULL);
+  if (!is_large_enough (area))
+    return;
+  TfArea plot = tf_wings_plot (wings, style, area);
+  guint first, end;
+  find_seen (wings, plot, &first, &end);
+  clip (cr, area);
+  clip (cr, plot);
+  tf_wings_draw_divides (cr, wings, style, plot);
+  draw_pick (cr, wings, style, plot);
+  draw_chosen (cr, wings, style, plot, first, end);
+  cairo_restore (cr);
+  draw_frame_line (cr, wings, style, plot);
+  cairo_restore (cr);
+}
+
+void
+tf_wings_draw (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area)
+{
+  tf_wings_draw_ground (cr, wings, style, area);
+  tf_wings_draw_over (cr, wings, style, area);
 }

@@ -14,15 +14,19 @@
 /* Steps of the time scale, finest first. Days are counted within a month. */
 typedef struct
 {
-  int days, months; /* one of them is 0 */
-  const char *form; /* for g_date_time_format */
+  int days, months;   /* one of them is 0 */
+  const char *form;   /* for g_date_time_format */
+  const char *coarse; /* of the first label, and of one that begins what the others lie in */
 } Step;
 
 static const Step steps[] = {
-  { 1, 0, "%-d %b" }, { 2, 0, "%-d %b" }, { 5, 0, "%-d %b" }, { 10, 0, "%-d %b" },
-  { 0, 1, "%b %Y" },  { 0, 3, "%b %Y" },  { 0, 6, "%b %Y" },  { 0, 12, "%Y" },
-  { 0, 24, "%Y" },    { 0, 60, "%Y" },    { 0, 120, "%Y" },   { 0, 240, "%Y" },
-  { 0, 600, "%Y" },   { 0, 1200, "%Y" },
+  { 1, 0, "%-d %b", "%-d %b %Y" }, { 2, 0, "%-d %b", "%-d %b %Y" },
+  { 5, 0, "%-d %b", "%-d %b %Y" }, { 10, 0, "%-d %b", "%-d %b %Y" },
+  { 0, 1, "%b", "%b %Y" },         { 0, 3, "%b", "%b %Y" },
+  { 0, 6, "%b", "%b %Y" },         { 0, 12, "%Y", "%Y" },
+  { 0, 24, "%Y", "%Y" },           { 0, 60, "%Y", "%Y" },
+  { 0, 120, "%Y", "%Y" },          { 0, 240, "%Y", "%Y" },
+  { 0, 600, "%Y", "%Y" },          { 0, 1200, "%Y", "%Y" },
 };
 
 static double
@@ -41,10 +45,10 @@ year_of (int year, int month, int day)
 }
 
 static char *
-dup_label (const Step *step, int year, int month, int day)
+dup_label (const char *form, int year, int month, int day)
 {
   g_autoptr (GDateTime) date = g_date_time_new_utc (year, month, day, 0, 0, 0);
-  return date != NULL ? g_date_time_format (date, step->form) : g_strdup ("");
+  return date != NULL ? g_date_time_format (date, form) : g_strdup ("");
 }
 
 static const Step *
@@ -54,7 +58,7 @@ choose_step (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfAre
   for (guint k = 0; k < G_N_ELEMENTS (steps); k++)
     {
       double width;
-      g_autofree char *label = dup_label (&steps[k], 2026, 12, 28);
+      g_autofree char *label = dup_label (steps[k].coarse, 2026, 12, 28);
       tf_chart_measure (cr, style, label, &width, NULL);
       if (step_years (&steps[k]) / span * plot.width >= width + style->text_pt * 1.5)
         return &steps[k];
@@ -64,7 +68,7 @@ choose_step (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfAre
 
 static void
 draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
-           const Step *step, int year, int month, int day)
+           const Step *step, int year, int month, int day, gboolean *begun)
 {
   double x = tf_wings_x (wings, plot, year_of (year, month, day)), width;
   if (x < plot.x - 0.5 || x > plot.x + plot.width + 0.5)
@@ -75,7 +79,9 @@ draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea 
   cairo_move_to (cr, floor (x) + 0.5, foot);
   cairo_line_to (cr, floor (x) + 0.5, foot + style->text_pt * 0.3);
   cairo_stroke (cr);
-  g_autofree char *label = dup_label (step, year, month, day);
+  gboolean coarse = !*begun || (month == 1 && day == 1);
+  g_autofree char *label = dup_label (coarse ? step->coarse : step->form, year, month, day);
+  *begun = TRUE;
   tf_chart_measure (cr, style, label, &width, NULL);
   double right = plot.x + plot.width + style->text_pt * 0.9;
   tf_chart_text (cr, style, MIN (x - width / 2, right - width), foot + style->text_pt * 0.35, 0, 0,
@@ -84,12 +90,12 @@ draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea 
 
 static void
 draw_month (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
-            const Step *step, int year, int month)
+            const Step *step, int year, int month, gboolean *begun)
 {
   if (step->months > 0)
     {
       if ((year * 12 + month - 1) % step->months == 0)
-        draw_tick (cr, wings, style, plot, step, year, month, 1);
+        draw_tick (cr, wings, style, plot, step, year, month, 1, begun);
       return;
     }
   for (int day = 1; day <= 28 || step->days < 5; day += step->days)
@@ -97,7 +103,7 @@ draw_month (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea
       if (day > g_date_get_days_in_month ((GDateMonth)month, (GDateYear)year))
         break;
       if (step->days < 2 || day < 31 - step->days / 2)
-        draw_tick (cr, wings, style, plot, step, year, month, day);
+        draw_tick (cr, wings, style, plot, step, year, month, day, begun);
     }
 }
 
@@ -105,6 +111,7 @@ static void
 draw_times (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
 {
   const Step *step = choose_step (cr, wings, style, plot);
+  gboolean begun = FALSE;
   int from = (int)floor (CLAMP (wings->from_year, 1.0, 9000.0)),
       to = (int)floor (CLAMP (wings->to_year, 1.0, 9000.0));
   for (int year = from; year <= to; year++)
@@ -113,7 +120,7 @@ draw_times (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea
         {
           double at = year_of (year, month, 1);
           if (at > wings->from_year - 0.1 && at <= wings->to_year)
-            draw_month (cr, wings, style, plot, step, year, month);
+            draw_month (cr, wings, style, plot, step, year, month, &begun);
         }
 }
 
@@ -191,87 +198,4 @@ tf_wings_draw_cycles (cairo_t *cr, const TfWings *wings, const TfChartStyle *sty
 {
   for (const TfCycle *cycle = tf_cycles; cycle->number > 0; cycle++)
     draw_cycle (cr, wings, style, plot, cycle);
-}
-
-typedef struct
-{
-  double x, high, middle, low; /* the divide and the edges of its band */
-} DividePoint;
-
-static void
-draw_divide_band (cairo_t *cr, const TfChartStyle *style, const DividePoint *points, guint n)
-{
-  for (guint k = 0; k < n; k++)
-    cairo_line_to (cr, points[k].x, points[k].high);
-  for (guint k = n; k > 0; k--)
-    cairo_line_to (cr, points[k - 1].x, points[k - 1].low);
-  cairo_close_path (cr);
-  tf_chart_set_alpha (cr, style->teal, style->contrast ? 0.28 : 0.15);
-  cairo_fill (cr);
-  for (guint k = 0; k < n; k++)
-    cairo_line_to (cr, points[k].x, points[k].middle);
-  tf_chart_set (cr, style->teal);
-  cairo_set_line_width (cr, 1.6);
-  cairo_stroke (cr);
-}
-
-static void
-draw_divide_handles (cairo_t *cr, const TfChartStyle *style, const DividePoint *points, guint n,
-                     double radius)
-{
-  for (int end = 0; end < 2; end++)
-    {
-      const DividePoint *at = &points[end == 0 ? 0 : n - 1];
-      cairo_arc (cr, at->x, at->middle, radius, 0, 2 * G_PI);
-      tf_chart_set (cr, style->ground);
-      cairo_fill_preserve (cr);
-      tf_chart_set (cr, style->teal);
-      cairo_set_line_width (cr, 1.5);
-      cairo_stroke (cr);
-    }
-}
-
-static void
-draw_divide (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, int cycle,
-             int hemisphere)
-{
-  const TfDivideParams *params = tf_divides_get_params (wings->divides);
-  double minimum = tf_time_year (tf_cycle_minimum (cycle));
-  if (minimum + params->after_months / 12.0 < wings->from_year
-      || minimum - params->before_months / 12.0 > wings->to_year)
-    return;
-  g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (DividePoint));
-  for (int month = -params->before_months; month <= params->after_months; month++)
-    {
-      double year
-          = minimum + month * 0.999 / 12.0; /* the ends themselves may lie a breath outside */
-      double lat
-          = tf_divides_latitude (wings->divides, cycle, hemisphere, tf_time_from_year (year));
-      DividePoint point
-          = { .x = tf_wings_x (wings, plot, year),
-              .high = tf_wings_y (wings, plot, hemisphere * (lat + params->band_deg)),
-              .middle = tf_wings_y (wings, plot, hemisphere * lat),
-              .low = tf_wings_y (wings, plot, hemisphere * (lat - params->band_deg)) };
-      if (isfinite (lat))
-        g_array_append_val (points, point);
-    }
-  if (points->len < 2)
-    return;
-  const DividePoint *first = &g_array_index (points, DividePoint, 0);
-  double across = g_array_index (points, DividePoint, points->len - 1).x - first->x;
-  draw_divide_band (cr, style, first, points->len);
-  if (across > 24)
-    draw_divide_handles (cr, style, first, points->len, MIN (3.2, plot.height * 0.04));
-}
-
-void
-tf_wings_draw_divides (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
-{
-  if (wings->divides == NULL)
-    return;
-  for (const TfCycle *cycle = tf_cycles; cycle->number > 0; cycle++)
-    {
-      draw_divide (cr, wings, style, plot, cycle->number, 1);
-      draw_divide (cr, wings, style, plot, cycle->number, -1);
-    }
 }

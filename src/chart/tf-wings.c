@@ -209,6 +209,24 @@ append_pick (GString *text, const TfWings *wings)
     }
 }
 
+static void
+append_hold (GString *text, const TfWings *wings)
+{
+  static const char *const handles[]
+      = { N_ ("all of it"), N_ ("its beginning"), N_ ("at the minimum"), N_ ("its end") };
+  if (wings->hold_cycle == 0 || wings->divides == NULL)
+    return;
+  g_string_append_printf (
+      text,
+      wings->hold_side > 0 ? _ (" Divide before cycle %d, north, chosen: %s; at the minimum %.1f°.")
+                           : _ (" Divide before cycle %d, south, chosen: %s; at the minimum %.1f°."),
+      wings->hold_cycle, _ (handles[CLAMP (wings->hold_handle + 1, 0, 3)]),
+      tf_divides_latitude (wings->divides, wings->hold_cycle, wings->hold_side,
+                           tf_cycle_minimum (wings->hold_cycle)));
+  if (wings->plain)
+    g_string_append (text, _ (" It is in hand: polarity and verdicts are hidden."));
+}
+
 char *
 tf_wings_dup_description (const TfWings *wings)
 {
@@ -233,6 +251,7 @@ tf_wings_dup_description (const TfWings *wings)
           append_count (text, c.cannot_say, _ ("{0} cannot be said."));
         }
     }
+  append_hold (text, wings);
   append_years (text, _ ("Shown: {0} to {1}."), wings->from_year, wings->to_year);
   append_years (text, _ ("The frame in view is at {0}."), wings->frame_year, wings->frame_year);
   append_pick (text, wings);

@@ -36,9 +36,19 @@ typedef struct
   double pick_low, pick_high; /* and band of latitude; NaN all */
   const TfDivides *divides;   /* nullable */
   gboolean plain;             /* a divide is in hand: dots plain, verdicts hidden */
+  gboolean movable;           /* divides have handles: where they begin to act, at the minimum, where
+                                 they cease */
+  int hold_cycle, hold_side;  /* the chosen divide: the cycle it begins, hemisphere; cycle 0 none */
+  int hold_handle;            /* 0 to 2; -1 all of it */
 } TfWings;
 
+/** tf_wings_draw: tf_wings_draw_ground: scale, cycles and dots, which cost most when there are many;
+ * then tf_wings_draw_over: divides, the stretch, the choice, the frame. */
 void tf_wings_draw (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area);
+void tf_wings_draw_ground (cairo_t *cr, const TfWings *wings, const TfChartStyle *style,
+                           TfArea area);
+void
+tf_wings_draw_over (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea area);
 /** tf_wings_plot: where the dots are: @area less the labels, whose room depends on the text size of
  * @style. */
 TfArea tf_wings_plot (const TfWings *wings, const TfChartStyle *style, TfArea area);
@@ -54,6 +64,10 @@ gboolean tf_wings_is_dense (const TfWings *wings, const TfChartStyle *style, TfA
 /** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year
  * when there are none. */
 void tf_wings_fit (TfWings *wings, double year);
+/** tf_wings_hit_divide: the divide at a point: @handle 0 to 2 within 9 units of a handle, -1 within 6
+ * of the line. FALSE: none, or not movable. */
+gboolean tf_wings_hit_divide (const TfWings *wings, const TfChartStyle *style, TfArea area,
+                              double x, double y, int *cycle, int *side, int *handle);
 char *tf_wings_dup_description (const TfWings *wings);
 
 G_END_DECLS

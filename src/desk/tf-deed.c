@@ -45,6 +45,8 @@ tf_deed_copy (const TfDeed *deed)
   copy->method = g_strdup (deed->method);
   copy->text = g_strdup (deed->text);
   copy->as = deed->as;
+  copy->study = g_strdup (deed->study);
+  copy->divide = deed->divide != NULL ? tf_moved_divide_copy (deed->divide) : NULL;
   if (deed->kind != TF_DEED_TOGETHER)
     return copy;
   copy->parts = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_deed_free);
@@ -65,6 +67,8 @@ tf_deed_free (TfDeed *deed)
   g_free (deed->text);
   g_clear_pointer (&deed->parts, g_ptr_array_unref);
   tf_undone_clear (&deed->undone);
+  g_free (deed->study);
+  tf_moved_divide_free (deed->divide);
   g_free (deed);
 }
 
@@ -124,6 +128,8 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
       return run_together (deed, ledger, person, error);
     case TF_DEED_GEOMETRY:
       return run_geometry (deed, ledger, person, error);
+    case TF_DEED_DIVIDE:
+      return tf_ledger_set_divide (ledger, deed->study, deed->divide, person, error);
     default:
       g_return_val_if_reached (FALSE);
     }
@@ -172,6 +178,7 @@ tf_deed_name (const TfDeed *deed)
     N_ ("the draft"),
     N_ ("several deeds as one"),
     N_ ("the geometry of the frame"),
+    N_ ("moving the divide"),
   };
   return _ (names[deed->kind]);
 }

@@ -7,6 +7,7 @@
  * can wait, be tried again, and be carried out in the writer's thread without anything of the
  * window. */
 
+#include "tf-ledger-divides.h"
 #include "tf-ledger.h"
 
 G_BEGIN_DECLS
@@ -25,6 +26,7 @@ typedef enum
   TF_DEED_DRAFT, /* frame, text; NULL text takes the draft away */
   TF_DEED_TOGETHER, /* parts, as: several as one, recorded and undone together */
   TF_DEED_GEOMETRY, /* frame, text: a TfCorrection; "" takes it back to the header */
+  TF_DEED_DIVIDE, /* study, divide */
 } TfDeedKind;
 
 typedef struct
@@ -39,6 +41,8 @@ typedef struct
   char *text;
   GPtrArray *parts; /* of TfDeed, the same person's */
   const char *as;   /* static: "split", "join", "several" */
+  char *study;
+  TfMovedDivide *divide;
   /* what came of it */
   gint64 mark; /* together: the first one kept */
   TfUndone undone;

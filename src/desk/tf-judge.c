@@ -3,7 +3,7 @@
  */
 #include "tf-judge.h"
 
-#include "tf-study.h"
+#include "tf-study-again.h"
 
 struct _TfJudge
 {
@@ -14,9 +14,17 @@ struct _TfJudge
 TfJudge *
 tf_judge_new (void)
 {
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  return tf_judge_new_for (study);
+}
+
+TfJudge *
+tf_judge_new_for (const TfStudy *study)
+{
   TfJudge *judge = g_atomic_rc_box_new0 (TfJudge);
-  judge->study = tf_study_new_default ();
-  judge->divides = judge->study->divides != NULL ? tf_divides_ref (judge->study->divides)
+  judge->study = tf_study_copy (study);
+  judge->divides = judge->study->divides != NULL ? tf_divides_with_params (
+                                                       judge->study->divides, &judge->study->divide)
                                                  : tf_divides_new (&judge->study->divide);
   return judge;
 }

@@ -3,17 +3,18 @@
  */
 #pragma once
 
-/* TfJudge: Hale's verdict for what the window shows, under the default study's divides.
+/* TfJudge: Hale's verdict for what the window shows, under a study's divides.
  * Immutable, may be read from any thread. */
 
-#include "tf-ledger.h"
-#include "tf-verdict.h"
+#include "tf-study.h"
 
 G_BEGIN_DECLS
 
 typedef struct _TfJudge TfJudge;
 
 TfJudge *tf_judge_new (void);
+/** tf_judge_new_for: by that study's divides and options. */
+TfJudge *tf_judge_new_for (const TfStudy *study);
 TfJudge *tf_judge_ref (TfJudge *judge);
 void tf_judge_unref (TfJudge *judge);
 const TfDivides *tf_judge_get_divides (const TfJudge *judge);

@@ -4,7 +4,7 @@
 /* What a person does: each deed is handed to the writer; the plate and the roll show it when the
  * ledger has it. */
 
-#include "tf-session-private.h"
+#include "tf-session-laws-private.h"
 
 #include <string.h>
 #include <glib/gi18n-lib.h>
@@ -34,6 +34,12 @@ push (TfSession *self, TfDeed *deed)
   tf_writer_push (self->writer, deed);
   tf_session_emit (self, TF_SIGNAL_STATUS);
   return TRUE;
+}
+
+void
+tf_session_push_deed (TfSession *self, TfDeed *deed)
+{
+  push (self, deed);
 }
 
 static const TfRow *
@@ -297,6 +303,8 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
       tf_session_emit (self, TF_SIGNAL_STATUS);
       return;
     }
+  if (deed->kind == TF_DEED_DIVIDE)
+    tf_session_divide_saved (self);
   if (deed->kind == TF_DEED_KEEP)
     after_keep (self, deed);
   else if (deed->kind == TF_DEED_DROP)
@@ -317,6 +325,8 @@ refused (TfWriter *writer, TfDeed *deed, const char *message, TfSession *self)
 {
   if (deed->kind == TF_DEED_KEEP)
     self->keeping = FALSE;
+  if (deed->kind == TF_DEED_DIVIDE)
+    tf_session_divide_saved (self);
   self->judging = 0;
   tf_session_forget_hoped (self);
   g_clear_pointer (&self->saved, g_free);
@@ -370,6 +380,7 @@ tf_session_give_up (TfSession *self)
   if (self->writer == NULL)
     return;
   tf_session_forget_hoped (self);
+  tf_session_divide_saved (self);
   self->keeping = FALSE; /* the draft stays on the plate */
   self->judging = 0;
   g_clear_pointer (&self->saved, g_free);

@@ -4,7 +4,7 @@
 /* The session and its ledger: opening, reading again after every change (its own and other
  * programs'), all off the main thread. */
 
-#include "tf-session-private.h"
+#include "tf-session-laws-private.h"
 
 #include <glib/gi18n-lib.h>
 
@@ -20,8 +20,9 @@ typedef struct
   gboolean all;
   gint64 frame;
   char *person;
-  TfJudge *judge;
+  TfStudy *study; /* brought: with the divides of the ledger */
   /* brought */
+  TfJudge *judge;
   gint64 version;
   GPtrArray *frames; /* all of them, when asked */
   TfFrameRow *row;   /* else the one */
@@ -37,7 +38,8 @@ reading_free (gpointer data)
 {
   Reading *r = data;
   g_free (r->person);
-  tf_judge_unref (r->judge);
+  tf_study_free (r->study);
+  g_clear_pointer (&r->judge, tf_judge_unref);
   g_clear_pointer (&r->frames, g_ptr_array_unref);
   g_clear_pointer (&r->row, tf_frame_row_free);
   g_clear_pointer (&r->rows, g_ptr_array_unref);
@@ -127,13 +129,15 @@ read_in_lane (TfLedger *ledger, gpointer data, GError **error)
   r->all = asked->all;
   r->frame = asked->frame;
   r->person = g_strdup (asked->person);
-  r->judge = tf_judge_ref (asked->judge);
+  r->study = tf_study_copy (asked->study);
   r->version = tf_ledger_get_version (ledger);
   const TfNote *read_only = tf_ledger_get_read_only (ledger);
   r->read_only = read_only != NULL ? tf_note_dup_text (read_only, FALSE) : NULL;
   r->notices = dup_notices (ledger);
   read_person (r, ledger);
-  if (read_frames (r, ledger, error))
+  gboolean ready = tf_study_read_divides (r->study, ledger, error);
+  r->judge = tf_judge_new_for (r->study);
+  if (ready && read_frames (r, ledger, error))
     r->points = tf_ledger_points (ledger, error);
   if (r->points == NULL)
     {
@@ -173,6 +177,7 @@ take_reading (TfSession *self, Reading *r)
 {
   take_ledger_state (self, r);
   gint64 now = self->frame_item != NULL ? tf_frame_item_get_row (self->frame_item)->id : 0;
+  tf_session_take_divides (self, r->study, r->judge);
   if (r->frames != NULL)
     tf_session_replace_frames (self, g_steal_pointer (&r->frames));
   TfFrameItem *item = r->row != NULL ? tf_session_find_frame (self, r->row->id) : NULL;
@@ -188,6 +193,8 @@ take_reading (TfSession *self, Reading *r)
     }
   tf_session_replace_points (self, g_steal_pointer (&r->points), g_steal_pointer (&r->dots),
                              g_steal_pointer (&r->mark_dots));
+  tf_session_judge_divide (self);
+  tf_session_forget_laws (self);
   tf_session_emit (self, TF_SIGNAL_STATUS);
 }
 
@@ -229,7 +236,7 @@ start_reading (TfSession *self)
   asked->all = self->refresh_all || !self->open;
   asked->frame = self->frame_item == NULL ? 0 : tf_frame_item_get_row (self->frame_item)->id;
   asked->person = g_strdup (self->person);
-  asked->judge = tf_judge_ref (self->judge);
+  asked->study = tf_study_copy (self->laws->study);
   self->refreshing = TRUE;
   self->refresh_again = self->refresh_all = FALSE;
   tf_lane_push (self->reader, self, self->reading, read_in_lane, asked, reading_free, reading_free,
@@ -293,6 +300,7 @@ tf_session_close (TfSession *self)
     }
   g_clear_object (&self->writer);
   g_clear_pointer (&self->reader, tf_lane_close);
+  tf_session_laws_close (self);
   g_clear_pointer (&self->path, g_free);
   g_clear_pointer (&self->trouble, g_free);
   g_clear_pointer (&self->read_only, g_free);

@@ -27,7 +27,10 @@ typedef enum
   TF_SIGNAL_POINTS,
   TF_SIGNAL_STATUS,
   TF_SIGNAL_PERSON_NEEDED,
+  TF_SIGNAL_LAWS,
 } TfSessionSignal;
+
+typedef struct _TfSessionLaws TfSessionLaws;
 
 struct _TfSession
 {
@@ -116,7 +119,10 @@ struct _TfSession
   GArray *all_dots;  /* TfWingsDot, one a point */
   GArray *mark_dots; /* TfWingsDot, of marks alone */
   gboolean show_hints;
-  double pick_from, pick_to;
+  double pick_from, pick_to;  /* years; NaN: all */
+  double pick_low, pick_high; /* latitudes; NaN: all */
+  GHashTable *pick_frames;    /* keys of frames with a region in the band; NULL: all */
+  TfSessionLaws *laws;
 };
 
 void tf_session_emit (TfSession *session, TfSessionSignal signal);
@@ -159,5 +165,9 @@ void tf_session_init_overlays (TfSession *session);
 void tf_session_clear_overlays (TfSession *session);
 /** tf_session_update_overlays: asks for the lines and ghosts of what is on the plate now. */
 void tf_session_update_overlays (TfSession *session);
+/** tf_session_push_deed: (transfer full): to the writer. */
+void tf_session_push_deed (TfSession *session, TfDeed *deed);
+/** tf_session_in_band: whether a latitude is in the band picked on the wings. */
+gboolean tf_session_in_band (TfSession *session, double lat_deg);
 
 G_END_DECLS

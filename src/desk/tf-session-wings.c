@@ -4,9 +4,10 @@
 /* The dots of the wings, and the stretch of time picked on them. A dot's id is its place in the
  * list of points, from 1. */
 
-#include "tf-session-private.h"
+#include "tf-session-laws-private.h"
 
 #include <math.h>
+#include <string.h>
 
 static GArray *
 dots_or_none (GArray *dots)
@@ -55,6 +56,21 @@ tf_session_set_show_hints (TfSession *self, gboolean show)
 }
 
 void
+tf_session_open_mark (TfSession *self, gint64 mark, gboolean hint)
+{
+  g_return_if_fail (TF_IS_SESSION (self));
+  for (guint k = 0; k < self->points->len; k++)
+    {
+      const TfPoint *point = &g_array_index (self->points, TfPoint, k);
+      if (point->mark == mark && (point->hint != 0) == hint)
+        {
+          tf_session_choose_dot (self, (gint64)k + 1);
+          return;
+        }
+    }
+}
+
+void
 tf_session_choose_dot (TfSession *self, gint64 id)
 {
   g_return_if_fail (TF_IS_SESSION (self));
@@ -96,16 +112,71 @@ tf_session_get_chosen_dot (TfSession *self)
   return 0;
 }
 
+/* -- the stretch picked ------------------------------------------------------------------------ */
+
+gboolean
+tf_session_in_band (TfSession *self, double lat_deg)
+{
+  return !(lat_deg < self->pick_low) && !(lat_deg > self->pick_high);
+}
+
+/* The frames of the stretch that hold a region in the band. */
+static void
+find_frames (TfSession *self)
+{
+  g_clear_pointer (&self->pick_frames, g_hash_table_unref);
+  if (isnan (self->pick_low) && isnan (self->pick_high))
+    return;
+  self->pick_frames = g_hash_table_new_full (g_int64_hash, g_int64_equal, g_free, NULL);
+  for (guint k = 0; k < self->points->len; k++)
+    {
+      const TfPoint *point = &g_array_index (self->points, TfPoint, k);
+      if (!(point->year < self->pick_from) && !(point->year > self->pick_to)
+          && tf_session_in_band (self, (double)point->lat_deg)
+          && !g_hash_table_contains (self->pick_frames, &point->frame))
+        g_hash_table_add (self->pick_frames, g_memdup2 (&point->frame, sizeof point->frame));
+    }
+}
+
+static void
+order (double *low, double *high)
+{
+  double least = fmin (*low, *high), most = fmax (*low, *high);
+  gboolean all = isnan (*low) || isnan (*high);
+  *low = all ? NAN : least;
+  *high = all ? NAN : most;
+}
+
 void
-tf_session_pick (TfSession *self, double from, double to)
+tf_session_pick_band (TfSession *self, double from, double to, double low, double high)
 {
   g_return_if_fail (TF_IS_SESSION (self));
-  gboolean all = isnan (from) || isnan (to);
-  self->pick_from = all ? NAN : fmin (from, to);
-  self->pick_to = all ? NAN : fmax (from, to);
+  order (&from, &to);
+  order (&low, &high);
+  gboolean band = !isnan (low) || !isnan (self->pick_low);
+  self->pick_from = from;
+  self->pick_to = to;
+  self->pick_low = low;
+  self->pick_high = high;
+  find_frames (self);
   tf_session_update_pick (self);
   tf_session_emit (self, TF_SIGNAL_POINTS);
   tf_session_emit (self, TF_SIGNAL_FRAMES);
+  tf_session_ask_laws (self);
+  if (band)
+    tf_session_refresh (self, FALSE); /* the regions on the plate */
+}
+
+void
+tf_session_pick (TfSession *self, double from, double to)
+{
+  tf_session_pick_band (self, from, to, NAN, NAN);
+}
+
+TfStretch
+tf_session_get_stretch (TfSession *self)
+{
+  return (TfStretch){ self->pick_from, self->pick_to, self->pick_low, self->pick_high };
 }
 
 void
@@ -113,4 +184,89 @@ tf_session_get_pick (TfSession *self, double *from, double *to)
 {
   *from = self->pick_from;
   *to = self->pick_to;
+}
+
+/* -- stretches that have names ----------------------------------------------------------------- */
+
+#define ROTATION_D 27.2752316 /* mean synodic rotation (Meeus 1998, chapter 29) */
+#define TURN_DEG_D 13.2    /* of regions as the Earth sees them */
+
+static const double days_a_year = 365.25, day_edge = 1e-6;
+
+static TfTime
+frame_time (TfSession *self)
+{
+  return self->frame_item != NULL ? tf_frame_item_get_row (self->frame_item)->info->time
+                                  : TF_TIME_UNKNOWN;
+}
+
+static double
+start_of_day (TfTime time)
+{
+  int year, month, day;
+  if (!tf_time_calendar (time, &year, &month, &day, NULL, NULL, NULL))
+    return NAN;
+  return tf_time_year (tf_time_from_calendar (year, month, day, 0, 0, 0, TF_SCALE_UTC));
+}
+
+/* The passage of the chosen region, else that of the centre of the disk: quarter of a turn before
+ * and after it is on the central meridian. */
+static void
+pick_passage (TfSession *self, double year)
+{
+  double cmd = 0;
+  if (self->region != NULL && isfinite (tf_region_item_get_row (self->region)->measure.cmd_deg))
+    cmd = tf_region_item_get_row (self->region)->measure.cmd_deg;
+  double middle = year - cmd / TURN_DEG_D / days_a_year, half = 90 / TURN_DEG_D / days_a_year;
+  tf_session_pick (self, middle - half, middle + half);
+}
+
+static gboolean
+pick_rotation (TfSession *self, TfTime time)
+{
+  /* the mean beginning of rotation C is JDE 2398140.2270 + 27.2752316 C (Meeus 1998, chapter 29) */
+  double jd = 2451545.0 + time.s / 86400;
+  double number = floor ((jd - 2398140.2270) / ROTATION_D);
+  double from = 2398140.2270 + ROTATION_D * number;
+  TfTime a = { (from - 2451545.0) * 86400 }, b = { (from + ROTATION_D - 2451545.0) * 86400 };
+  tf_session_pick (self, tf_time_year (a), tf_time_year (b));
+  return TRUE;
+}
+
+static gboolean
+pick_cycle (TfSession *self, TfTime time)
+{
+  int cycle = tf_cycle_by_date (time);
+  if (cycle == 0)
+    return FALSE;
+  double from = tf_time_year (tf_cycle_minimum (cycle)),
+         to = tf_time_year (tf_cycle_minimum (cycle + 1));
+  tf_session_pick (self, from, isfinite (to) ? to : from + 11);
+  return TRUE;
+}
+
+gboolean
+tf_session_pick_named (TfSession *self, const char *name)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && name != NULL, FALSE);
+  double cadence, day = 1 / days_a_year;
+  TfTime newest = tf_session_get_newest (self, &cadence), time = frame_time (self);
+  double today = start_of_day (newest), here = tf_time_year (time);
+  if (strcmp (name, "all") == 0)
+    tf_session_pick (self, NAN, NAN);
+  else if (strcmp (name, "today") == 0 && isfinite (today))
+    tf_session_pick (self, today - day_edge, today + day);
+  else if (!isfinite (here))
+    return FALSE;
+  else if (strcmp (name, "days") == 0)
+    tf_session_pick (self, here - 3 * day, here + day_edge);
+  else if (strcmp (name, "passage") == 0)
+    pick_passage (self, here);
+  else if (strcmp (name, "rotation") == 0)
+    return pick_rotation (self, time);
+  else if (strcmp (name, "cycle") == 0)
+    return pick_cycle (self, time);
+  else
+    return FALSE;
+  return TRUE;
 }

@@ -5,7 +5,7 @@
 
 #include <math.h>
 
-#include "tf-session-private.h"
+#include "tf-session-laws-private.h"
 
 G_DEFINE_FINAL_TYPE (TfSession, tf_session, G_TYPE_OBJECT)
 
@@ -15,7 +15,7 @@ static const char *const signal_names[] = {
   [TF_SIGNAL_OVERLAYS] = "overlays-changed",
   [TF_SIGNAL_REGIONS] = "regions-changed",     [TF_SIGNAL_CHOICE] = "choice-changed",
   [TF_SIGNAL_POINTS] = "points-changed",       [TF_SIGNAL_STATUS] = "status-changed",
-  [TF_SIGNAL_PERSON_NEEDED] = "person-needed",
+  [TF_SIGNAL_PERSON_NEEDED] = "person-needed", [TF_SIGNAL_LAWS] = "laws-changed",
 };
 
 enum
@@ -57,6 +57,8 @@ static void
 finalize (GObject *object)
 {
   TfSession *self = TF_SESSION (object);
+  tf_session_laws_finalize (self);
+  g_clear_pointer (&self->pick_frames, g_hash_table_unref);
   g_clear_pointer (&self->draft, tf_outline_unref);
   tf_measure_clear (&self->measure);
   g_array_unref (self->line);
@@ -109,11 +111,12 @@ tf_session_init (TfSession *self)
   self->correction = self->preview = tf_correction_none ();
   tf_session_update_method (self);
   init_lists (self);
+  tf_session_laws_init (self);
   tf_session_replace_points (self, NULL, NULL, NULL);
   self->loader = tf_loader_new (self->pool);
   self->north_up = TRUE;
   self->range = DEFAULT_RANGE_GAUSS;
-  self->pick_from = self->pick_to = NAN;
+  self->pick_from = self->pick_to = self->pick_low = self->pick_high = NAN;
   self->view.width = self->view.height = 1;
   self->view.zoom = 1;
   tf_session_update_pick (self);
@@ -147,7 +150,7 @@ tf_session_get_method (TfSession *self)
 const TfDivides *
 tf_session_get_divides (TfSession *self)
 {
-  return tf_judge_get_divides (self->judge);
+  return self->laws->moved != NULL ? self->laws->moved : tf_judge_get_divides (self->judge);
 }
 
 /* -- regions and the choice ------------------------------------------------------------------ */
@@ -242,6 +245,11 @@ tf_session_replace_regions (TfSession *self, GPtrArray *rows)
   for (guint k = 0; k < n; k++)
     {
       TfRow *row = g_ptr_array_index (rows, k);
+      if (!tf_session_in_band (self, row->measure.lat_deg) && row->mark != self->want_mark)
+        {
+          tf_row_free (row);
+          continue;
+        }
       tf_session_move_row (self, row);
       TfVerdict verdict = tf_judge_measure (self->judge, &row->measure, NULL);
       g_ptr_array_add (items, tf_region_item_new (row, verdict));

@@ -9,6 +9,11 @@ G_BEGIN_DECLS
 
 /** tf_window_focus_plate: the keys of drawing go to the plate. */
 void tf_window_focus_plate (TfWindow *window);
+/** tf_window_show_bench: "mark", "laws"; FALSE: no such bench. */
+gboolean tf_window_show_bench (TfWindow *window, const char *name);
+void tf_window_enlarge_chart (TfWindow *window, const char *name);
+/** tf_window_get_wings_span: the years in view on the wings. */
+void tf_window_get_wings_span (TfWindow *window, double *from, double *to);
 /* tf-window-actions.c */
 void tf_window_add_actions (TfWindow *window);
 /** tf_window_update_actions: which commands are possible now, and the state of those that have

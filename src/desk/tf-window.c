@@ -7,6 +7,8 @@
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-actions-laws.h"
+#include "tf-laws-bench.h"
 #include "tf-plate-pane.h"
 #include "tf-preferences.h"
 #include "tf-roll.h"
@@ -20,7 +22,7 @@ struct _TfWindow
 {
   AdwApplicationWindow parent;
   AdwToastOverlay *toasts;
-  GtkStack *stack;
+  GtkStack *stack, *benches;
   GtkMenuButton *ledger_button;
   GtkLabel *ledger_name, *age, *problem, *ledger_problem, *feed_trouble, *wings_words;
   GtkButton *person_button;
@@ -31,6 +33,7 @@ struct _TfWindow
   TfPlatePane *plate_pane;
   TfSlip *slip;
   TfWingsView *wings;
+  TfLawsBench *laws;
   TfSession *session;
   AdwToast *toast; /* the last one */
   guint age_timer;
@@ -78,6 +81,37 @@ tf_window_can_make_here (TfWindow *self)
   const char *path = tf_session_get_ledger_path (self->session);
   return path != NULL && !tf_session_has_ledger (self->session)
          && !g_file_test (path, G_FILE_TEST_EXISTS);
+}
+
+gboolean
+tf_window_show_bench (TfWindow *self, const char *name)
+{
+  if (gtk_stack_get_child_by_name (self->benches, name) == NULL)
+    return FALSE;
+  gtk_stack_set_visible_child_name (self->benches, name);
+  return TRUE;
+}
+
+void
+tf_window_enlarge_chart (TfWindow *self, const char *name)
+{
+  tf_laws_bench_enlarge (self->laws, name);
+}
+
+void
+tf_window_get_wings_span (TfWindow *self, double *from, double *to)
+{
+  tf_wings_view_get_span (self->wings, from, to);
+}
+
+/* The switcher changes the bench as the action does. */
+static void
+bench_changed (TfWindow *self)
+{
+  const char *name = gtk_stack_get_visible_child_name (self->benches);
+  GAction *bench = g_action_map_lookup_action (G_ACTION_MAP (self), "bench");
+  if (name != NULL)
+    g_simple_action_set_state (G_SIMPLE_ACTION (bench), g_variant_new_string (name));
 }
 
 /* -- the age of the newest frame ------------------------------------------------------------- */
@@ -258,6 +292,8 @@ connect_session (TfWindow *self)
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "overlays-changed", G_CALLBACK (tf_window_update_actions), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "laws-changed", G_CALLBACK (tf_window_update_laws_actions), self,
+                           G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "message", G_CALLBACK (message), self, 0);
 }
 
@@ -363,6 +399,8 @@ bind_children (GtkWidgetClass *widget)
 {
   gtk_widget_class_bind_template_child (widget, TfWindow, toasts);
   gtk_widget_class_bind_template_child (widget, TfWindow, stack);
+  gtk_widget_class_bind_template_child (widget, TfWindow, benches);
+  gtk_widget_class_bind_template_child (widget, TfWindow, laws);
   gtk_widget_class_bind_template_child (widget, TfWindow, ledger_button);
   gtk_widget_class_bind_template_child (widget, TfWindow, ledger_name);
   gtk_widget_class_bind_template_child (widget, TfWindow, age);
@@ -395,6 +433,7 @@ tf_window_class_init (TfWindowClass *klass)
   g_type_ensure (TF_TYPE_PLATE_PANE);
   g_type_ensure (TF_TYPE_SLIP);
   g_type_ensure (TF_TYPE_WINGS_VIEW);
+  g_type_ensure (TF_TYPE_LAWS_BENCH);
   gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/window.ui");
   bind_children (widget);
 }
@@ -430,6 +469,9 @@ tf_window_init (TfWindow *self)
   self->session = tf_session_new ();
   connect_session (self);
   tf_window_add_actions (self);
+  tf_window_add_laws_actions (self);
+  g_signal_connect_object (self->benches, "notify::visible-child", G_CALLBACK (bench_changed), self,
+                           G_CONNECT_SWAPPED);
   tf_window_add_drop (self);
   restore_preferences (self);
   tf_roll_set_session (self->roll, self->session);
@@ -438,6 +480,7 @@ tf_window_init (TfWindow *self)
   g_signal_connect_object (self->session, "choice-changed", G_CALLBACK (rescue_focus), self,
                            G_CONNECT_SWAPPED | G_CONNECT_AFTER);
   tf_wings_view_set_session (self->wings, self->session);
+  tf_laws_bench_set_session (self->laws, self->session);
   self->age_timer = g_timeout_add_seconds (AGE_SECONDS, age_tick, self);
   GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));
   g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (set_widths), self,

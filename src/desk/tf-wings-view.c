@@ -7,6 +7,7 @@
 #include <adwaita.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-session-laws.h"
 #include "tf-widget-style.h"
 #include "tf-wings.h"
 
@@ -15,11 +16,13 @@ struct _TfWingsView
   GtkWidget parent;
   TfSession *session;
   TfWings wings;
+  TfDivides *divides; /* those of wings: kept alive, the session may change its own at any time */
   gboolean fitted;
-  cairo_surface_t *surface; /* what was drawn last */
+  cairo_surface_t *surface; /* the ground as it was drawn last */
   gboolean stale;
   double pointer_x;
-  double drag_from; /* year; NaN: no drag in hand */
+  double drag_from, drag_lat; /* where a drag began: year, latitude; NaN: none in hand */
+  gboolean moves_divide;      /* the drag has a divide; drag_lat is where it was seen last */
 };
 
 G_DEFINE_FINAL_TYPE (TfWingsView, tf_wings_view, GTK_TYPE_WIDGET)
@@ -27,8 +30,11 @@ G_DEFINE_FINAL_TYPE (TfWingsView, tf_wings_view, GTK_TYPE_WIDGET)
 enum
 {
   HEIGHT = 132,
-  CLICK_SLACK = 4
+  TALL_HEIGHT = 224, /* on the Laws bench */
+  CLICK_SLACK = 4,
+  BAND_SLACK = 14 /* a drag along time need not be straight */
 };
+static const double key_step_deg = 0.5;
 static const double label_share = 0.78, lat_max_deg = 45, wheel_factor = 1.25;
 static const double shortest_years = 0.01, longest_years = 400;
 
@@ -45,12 +51,19 @@ style_of (TfWingsView *self)
   return tf_widget_chart_style (GTK_WIDGET (self), label_share);
 }
 
+/* What lies over the dots has changed. */
+static void
+redraw_over (TfWingsView *self)
+{
+  tf_widget_describe (GTK_WIDGET (self), tf_wings_dup_description (&self->wings));
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+}
+
 static void
 redraw (TfWingsView *self)
 {
   self->stale = TRUE;
-  tf_widget_describe (GTK_WIDGET (self), tf_wings_dup_description (&self->wings));
-  gtk_widget_queue_draw (GTK_WIDGET (self));
+  redraw_over (self);
 }
 
 /* -- following the session ------------------------------------------------------------------- */
@@ -70,15 +83,30 @@ this_year (void)
 }
 
 static void
+take_divides (TfWingsView *self)
+{
+  const TfDivides *now = tf_session_get_divides (self->session);
+  if (now == self->divides)
+    return;
+  g_clear_pointer (&self->divides, tf_divides_unref);
+  self->divides = now != NULL ? tf_divides_ref ((TfDivides *)now) : NULL;
+  self->wings.divides = self->divides;
+}
+
+static void
 points_changed (TfWingsView *self)
 {
   GArray *dots = tf_session_get_dots (self->session, NULL);
   self->wings.dots = (const TfWingsDot *)(gconstpointer)dots->data;
   self->wings.n = dots->len;
-  self->wings.divides = tf_session_get_divides (self->session);
+  take_divides (self);
   self->wings.frame_year = frame_year (self);
   self->wings.chosen = tf_session_get_chosen_dot (self->session);
-  tf_session_get_pick (self->session, &self->wings.pick_from, &self->wings.pick_to);
+  TfStretch stretch = tf_session_get_stretch (self->session);
+  self->wings.pick_from = stretch.from_year;
+  self->wings.pick_to = stretch.to_year;
+  self->wings.pick_low = stretch.low_deg;
+  self->wings.pick_high = stretch.high_deg;
   if (self->fitted)
     tf_wings_fit (&self->wings,
                   isfinite (self->wings.frame_year) ? self->wings.frame_year : this_year ());
@@ -96,9 +124,42 @@ place_changed (TfWingsView *self)
     return;
   self->wings.frame_year = year;
   self->wings.chosen = chosen;
-  if (self->fitted && self->wings.n == 0)
+  gboolean moves = self->fitted && self->wings.n == 0;
+  if (moves)
     tf_wings_fit (&self->wings, isfinite (year) ? year : this_year ());
-  redraw (self);
+  if (moves)
+    redraw (self);
+  else
+    redraw_over (self);
+}
+
+static void
+laws_changed (TfWingsView *self)
+{
+  const TfDivideHold *hold = tf_session_get_divide (self->session);
+  gboolean plain = tf_session_is_plain (self->session),
+           movable = tf_session_shows_laws (self->session);
+  gboolean dots = plain != self->wings.plain
+                  || (hold->in_hand && tf_session_get_show_polarity (self->session));
+  if (movable != self->wings.movable)
+    gtk_widget_queue_resize (GTK_WIDGET (self));
+  take_divides (self);
+  self->wings.plain = plain;
+  self->wings.movable = movable;
+  self->wings.hold_cycle = hold->cycle;
+  self->wings.hold_side = hold->hemisphere;
+  self->wings.hold_handle = hold->handle;
+  if (dots)
+    redraw (self);
+  else
+    redraw_over (self);
+}
+
+void
+tf_wings_view_get_span (TfWingsView *self, double *from, double *to)
+{
+  *from = self->wings.from_year;
+  *to = self->wings.to_year;
 }
 
 void
@@ -112,7 +173,10 @@ tf_wings_view_set_session (TfWingsView *self, TfSession *session)
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "choice-changed", G_CALLBACK (place_changed), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "laws-changed", G_CALLBACK (laws_changed), self,
+                           G_CONNECT_SWAPPED);
   points_changed (self);
+  laws_changed (self);
 }
 
 /* -- zoom, pick, choose ---------------------------------------------------------------------- */
@@ -149,6 +213,13 @@ year_at (TfWingsView *self, double x)
   return tf_wings_year_at (&self->wings, &style, area_of (self), x);
 }
 
+static double
+lat_at (TfWingsView *self, double y)
+{
+  TfChartStyle style = style_of (self);
+  return tf_wings_lat_at (&self->wings, &style, area_of (self), y);
+}
+
 static gboolean
 scrolled (GtkEventControllerScroll *scroll, double dx, double dy, TfWingsView *self)
 {
@@ -167,20 +238,47 @@ motion (GtkEventControllerMotion *controller, double x, double y, TfWingsView *s
 static void
 drag_begin (GtkGestureDrag *gesture, double x, double y, TfWingsView *self)
 {
+  TfChartStyle style = style_of (self);
+  int cycle, side, handle;
   gtk_widget_grab_focus (GTK_WIDGET (self));
   self->drag_from = year_at (self, x);
+  self->drag_lat = lat_at (self, y);
+  self->moves_divide = self->session != NULL
+                       && tf_wings_hit_divide (&self->wings, &style, area_of (self), x, y, &cycle,
+                                               &side, &handle);
+  if (self->moves_divide)
+    tf_session_choose_divide (self->session, cycle, side, handle);
+}
+
+static void
+move_divide (TfWingsView *self, double y)
+{
+  double lat = lat_at (self, y);
+  int side = tf_session_get_divide (self->session)->hemisphere;
+  tf_session_move_divide (self->session, side * (lat - self->drag_lat));
+  self->drag_lat = lat;
 }
 
 static void
 drag_update (GtkGestureDrag *gesture, double dx, double dy, TfWingsView *self)
 {
   double x, y;
+  gtk_gesture_drag_get_start_point (gesture, &x, &y);
+  if (self->moves_divide)
+    {
+      if (fabs (dy) >= CLICK_SLACK || tf_session_get_divide (self->session)->in_hand)
+        move_divide (self, y + dy);
+      return;
+    }
   if (fabs (dx) < CLICK_SLACK)
     return;
-  gtk_gesture_drag_get_start_point (gesture, &x, &y);
+  gboolean band = fabs (dy) >= BAND_SLACK;
+  double lat = lat_at (self, y + dy);
   self->wings.pick_from = fmin (self->drag_from, year_at (self, x + dx));
   self->wings.pick_to = fmax (self->drag_from, year_at (self, x + dx));
-  redraw (self);
+  self->wings.pick_low = band ? fmin (self->drag_lat, lat) : NAN;
+  self->wings.pick_high = band ? fmax (self->drag_lat, lat) : NAN;
+  redraw_over (self);
 }
 
 static void
@@ -188,8 +286,10 @@ click (TfWingsView *self, double x, double y)
 {
   TfChartStyle style = style_of (self);
   int hit = tf_wings_hit (&self->wings, &style, area_of (self), x, y);
-  if (hit >= 0)
-    tf_session_choose_dot (self->session, self->wings.dots[hit].id);
+  if (hit < 0)
+    return;
+  tf_session_choose_dot (self->session, self->wings.dots[hit].id);
+  gtk_widget_activate_action (GTK_WIDGET (self), "win.bench", "s", "mark");
 }
 
 static void
@@ -199,11 +299,15 @@ drag_end (GtkGestureDrag *gesture, double dx, double dy, TfWingsView *self)
   if (self->session == NULL || isnan (self->drag_from))
     return;
   gtk_gesture_drag_get_start_point (gesture, &x, &y);
-  if (fabs (dx) < CLICK_SLACK)
+  if (self->moves_divide)
+    gtk_widget_activate_action (GTK_WIDGET (self), "win.keep-divide", NULL);
+  else if (fabs (dx) < CLICK_SLACK)
     click (self, x, y);
   else
-    tf_session_pick (self->session, self->drag_from, year_at (self, x + dx));
+    tf_session_pick_band (self->session, self->wings.pick_from, self->wings.pick_to,
+                          self->wings.pick_low, self->wings.pick_high);
   self->drag_from = NAN;
+  self->moves_divide = FALSE;
 }
 
 static void
@@ -213,14 +317,63 @@ pressed (GtkGestureClick *gesture, int n, double x, double y, TfWingsView *self)
     show_all (self);
 }
 
+/* Keys of the divides, on the Laws bench. */
 static gboolean
-key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
-             TfWingsView *self)
+divide_key (TfWingsView *self, guint key)
+{
+  GtkWidget *widget = GTK_WIDGET (self);
+  gboolean chosen = self->wings.hold_cycle != 0;
+  switch (key)
+    {
+    case GDK_KEY_d:
+      tf_session_step_divide (self->session, 1, self->wings.from_year, self->wings.to_year);
+      return TRUE;
+    case GDK_KEY_D:
+      tf_session_step_divide (self->session, -1, self->wings.from_year, self->wings.to_year);
+      return TRUE;
+    case GDK_KEY_h:
+      return chosen && gtk_widget_activate_action (widget, "win.next-handle", NULL);
+    case GDK_KEY_Up:
+      return chosen
+             && gtk_widget_activate_action (widget, "win.move-divide", "d",
+                                            self->wings.hold_side * key_step_deg);
+    case GDK_KEY_Down:
+      return chosen
+             && gtk_widget_activate_action (widget, "win.move-divide", "d",
+                                            -self->wings.hold_side * key_step_deg);
+    case GDK_KEY_Return:
+    case GDK_KEY_KP_Enter:
+      return chosen && gtk_widget_activate_action (widget, "win.keep-divide", NULL);
+    case GDK_KEY_Escape:
+      return chosen && gtk_widget_activate_action (widget, "win.put-back-divide", NULL);
+    case GDK_KEY_BackSpace:
+    case GDK_KEY_Delete:
+      return chosen && gtk_widget_activate_action (widget, "win.compute-divide", NULL);
+    default:
+      return FALSE;
+    }
+}
+
+static gboolean
+stretch_key (TfWingsView *self, guint key)
+{
+  static const struct
+  {
+    guint key;
+    const char *name;
+  } keys[] = { { GDK_KEY_t, "today" },    { GDK_KEY_3, "days" },  { GDK_KEY_p, "passage" },
+               { GDK_KEY_r, "rotation" }, { GDK_KEY_c, "cycle" }, { GDK_KEY_a, "all" } };
+  for (guint k = 0; k < G_N_ELEMENTS (keys); k++)
+    if (keys[k].key == key)
+      return gtk_widget_activate_action (GTK_WIDGET (self), "win.stretch", "s", keys[k].name);
+  return FALSE;
+}
+
+static gboolean
+time_key (TfWingsView *self, guint key)
 {
   double span = self->wings.to_year - self->wings.from_year,
          middle = (self->wings.to_year + self->wings.from_year) / 2;
-  if (self->session == NULL || (state & (GDK_CONTROL_MASK | GDK_ALT_MASK)) != 0)
-    return FALSE;
   switch (key)
     {
     case GDK_KEY_Left:
@@ -245,6 +398,16 @@ key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifi
     }
 }
 
+static gboolean
+key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifierType state,
+             TfWingsView *self)
+{
+  if (self->session == NULL || (state & (GDK_CONTROL_MASK | GDK_ALT_MASK)) != 0)
+    return FALSE;
+  return (self->wings.movable && divide_key (self, key)) || stretch_key (self, key)
+         || time_key (self, key);
+}
+
 /* -- the widget ------------------------------------------------------------------------------ */
 
 static void
@@ -255,7 +418,7 @@ draw (TfWingsView *self, int width, int height, int scale)
   self->surface = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, width * scale, height * scale);
   cairo_t *cr = cairo_create (self->surface);
   cairo_scale (cr, scale, scale);
-  tf_wings_draw (cr, &self->wings, &style, (TfArea){ 0, 0, width, height });
+  tf_wings_draw_ground (cr, &self->wings, &style, (TfArea){ 0, 0, width, height });
   cairo_destroy (cr);
   self->stale = FALSE;
 }
@@ -271,6 +434,11 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   if (self->surface == NULL || self->stale)
     draw (self, width, height, scale);
   tf_surface_append (snapshot, widget, self->surface, 0, 0, scale);
+  TfChartStyle style = style_of (self);
+  graphene_rect_t all = GRAPHENE_RECT_INIT (0, 0, (float)width, (float)height);
+  cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
+  tf_wings_draw_over (cr, &self->wings, &style, area_of (self));
+  cairo_destroy (cr);
 }
 
 static void
@@ -279,7 +447,10 @@ measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minim
 {
   double text = tf_widget_text_size (widget) / 14.0;
   *minimum
-      = orientation == GTK_ORIENTATION_VERTICAL ? (int)(HEIGHT * fmax (1, 0.6 + 0.4 * text)) : 200;
+      = orientation == GTK_ORIENTATION_VERTICAL
+            ? (int)((TF_WINGS_VIEW (widget)->wings.movable ? TALL_HEIGHT : HEIGHT)
+                    * fmax (1, 0.6 + 0.4 * text))
+            : 200;
   *natural = *minimum;
 }
 
@@ -300,6 +471,8 @@ dispose (GObject *object)
 {
   TfWingsView *self = TF_WINGS_VIEW (object);
   g_clear_pointer (&self->surface, cairo_surface_destroy);
+  self->wings.divides = NULL;
+  g_clear_pointer (&self->divides, tf_divides_unref);
   g_clear_object (&self->session);
   G_OBJECT_CLASS (tf_wings_view_parent_class)->dispose (object);
 }

@@ -15,6 +15,8 @@ G_BEGIN_DECLS
 #define TF_TYPE_WINGS_VIEW (tf_wings_view_get_type ())
 G_DECLARE_FINAL_TYPE (TfWingsView, tf_wings_view, TF, WINGS_VIEW, GtkWidget)
 
+/** tf_wings_view_get_span: the years in view. */
+void tf_wings_view_get_span (TfWingsView *view, double *from, double *to);
 void tf_wings_view_set_session (TfWingsView *view, TfSession *session);
 
 G_END_DECLS

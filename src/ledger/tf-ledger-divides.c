@@ -20,6 +20,16 @@ tf_moved_divide_free (TfMovedDivide *divide)
   g_free (divide);
 }
 
+TfMovedDivide *
+tf_moved_divide_copy (const TfMovedDivide *divide)
+{
+  TfMovedDivide *copy = g_memdup2 (divide, sizeof *divide);
+  copy->times = g_memdup2 (divide->times, divide->n * sizeof *divide->times);
+  copy->lats = g_memdup2 (divide->lats, divide->n * sizeof *divide->lats);
+  copy->person = g_strdup (divide->person);
+  return copy;
+}
+
 /* The study by its name, so that two people who work apart move the same divide. */
 static char *
 subject_of (const char *study, const TfMovedDivide *divide)

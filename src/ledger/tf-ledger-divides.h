@@ -21,6 +21,7 @@ typedef struct
   gboolean shown;        /* polarity was shown while it was moved, this time or before */
   char *person;          /* who moved it last */
 } TfMovedDivide;
+TfMovedDivide *tf_moved_divide_copy (const TfMovedDivide *divide);
 void tf_moved_divide_free (TfMovedDivide *divide);
 
 /** tf_ledger_set_divide: a deed; n 0 sets the divide back to computed. Person and order of points are

@@ -34,6 +34,14 @@ TfSample *tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const T
                           TfFindings *findings);
 /** tf_study_add_cautions: what must be said beside the numbers. */
 void tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows);
+/** tf_study_read_rows: (transfer full): what the study takes of a ledger; an error when that is
+ * nothing. */
+GPtrArray *
+tf_study_read_rows (const TfStudy *study, TfLedger *ledger, double floor, GError **error);
+/** tf_study_run_rows: (transfer full): sieve, sampling rule, verdicts and laws; @what_if: and the
+ * other choices. */
+TfFindings *tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger,
+                               double floor, gboolean what_if);
 /** tf_study_count: one more of @key. */
 void tf_study_count (GHashTable *counts, const char *key);
 /** tf_study_has_floor: whether a row was measured with the even floor @gauss (within 0.5 %). */

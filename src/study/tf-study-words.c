@@ -86,12 +86,14 @@ add_joy (GString *out, const TfFindings *findings, const TfStudy *study)
                                         : g_strdup (_ ("all separations"));
   g_string_append_printf (
       out,
-      _ ("Joy's law (%s, %s, %s, %u picks, %u without polarity): slope %+.3f %s (%.0f %%: %+.3f "
-         "to %+.3f, clustered by region).\n"),
-      form, estimator, cut, f->n, f->no_polarity, f->slope,
-      tf_joy_unit ((TfJoyForm)study->joy.form), 100 * study->joy.level, f->slope_ci.low,
-      f->slope_ci.high);
-  g_string_append_printf (out, _ ("Tilts scatter about it by %.1f°.\n"), f->scatter_deg);
+      _ ("Joy's law (%s, %s, %s, %u picks, %u without polarity): slope %+.3f %s"), form, estimator,
+      cut, f->n, f->no_polarity, f->slope, tf_joy_unit ((TfJoyForm)study->joy.form));
+  if (isfinite (f->slope_ci.low))
+    g_string_append_printf (out, _ (" (%.0f %%: %+.3f to %+.3f, clustered by region)"),
+                            100 * study->joy.level, f->slope_ci.low, f->slope_ci.high);
+  g_string_append (out, ".\n");
+  if (isfinite (f->scatter_deg))
+    g_string_append_printf (out, _ ("Tilts scatter about it by %.1f°.\n"), f->scatter_deg);
 }
 
 /* What changes the meaning of the numbers stands among them. */

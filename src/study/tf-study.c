@@ -255,8 +255,9 @@ bin_tilts (TfFindings *findings, const TfStudy *study)
   findings->scatter_bins = tf_bins (separation, rest, n, 0.0, 20.0, 1.0, study->joy.level);
 }
 
-static TfFindings *
-run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger, double floor)
+TfFindings *
+tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger, double floor,
+                   gboolean what_if)
 {
   TfFindings *findings = findings_new (floor);
   findings->every = tf_study_marks (study, rows, findings);
@@ -265,7 +266,8 @@ run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger, doubl
   judge (findings, study);
   findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);
   findings->joy = fit_joy (findings, study);
-  findings->what_if = tf_study_what_if (study, rows, findings, ledger);
+  findings->what_if = what_if ? tf_study_what_if (study, rows, findings, ledger)
+                              : g_array_new (FALSE, FALSE, sizeof (TfWhatIf));
   findings->comparisons = tf_compare (findings->sample, findings->verdicts, &study->joy);
   bin_shares (findings, study);
   bin_tilts (findings, study);
@@ -282,7 +284,7 @@ tf_study_run_sample (const TfStudy *study, const TfSample *all)
 {
   g_return_val_if_fail (study != NULL && all != NULL, NULL);
   const TfStudyRows rows = { NULL, (TfSample *)all };
-  return run_rows (study, &rows, NULL, NAN);
+  return tf_study_run_rows (study, &rows, NULL, NAN, TRUE);
 }
 
 static gboolean
@@ -313,16 +315,25 @@ tf_study_sample_rows (const GPtrArray *rows)
   return all;
 }
 
+GPtrArray *
+tf_study_read_rows (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
+{
+  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints };
+  g_autoptr (GPtrArray) found = tf_study_rows (ledger, &query, floor, error);
+  if (found == NULL || complain_empty (study, found, ledger, error))
+    return NULL;
+  return g_steal_pointer (&found);
+}
+
 TfFindings *
 tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
-  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints };
   double floor = tf_study_even_floor (ledger, NULL);
-  g_autoptr (GPtrArray) found = tf_study_rows (ledger, &query, floor, error);
-  if (found == NULL || complain_empty (study, found, ledger, error))
+  g_autoptr (GPtrArray) found = tf_study_read_rows (study, ledger, floor, error);
+  if (found == NULL)
     return NULL;
   g_autoptr (TfSample) all = tf_study_sample_rows (found);
   const TfStudyRows rows = { found, all };
-  return run_rows (study, &rows, ledger, floor);
+  return tf_study_run_rows (study, &rows, ledger, floor, TRUE);
 }

@@ -184,6 +184,76 @@ the_chosen_dot_has_a_ring_of_ink (void)
                     picture_count (&before, style.ink, 0.2) + 20);
 }
 
+/* A handle is found where the divide is, each of the three by itself, the line between them as the
+ * whole; nothing is found when divides are not to be moved. */
+static void
+a_divide_is_found_by_its_handles_and_its_line (void)
+{
+  TfDivideParams params;
+  tf_options_reset (tf_divide_options, &params);
+  g_autoptr (TfDivides) divides = tf_divides_new (&params);
+  TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
+  TfWings wings = wings_of (NULL, 0);
+  wings.from_year = 2005;
+  wings.to_year = 2013;
+  wings.divides = divides;
+  wings.movable = TRUE;
+  double minimum = tf_time_year (tf_cycle_minimum (24));
+  const double months[] = { -params.before_months, 0, params.after_months, -12 };
+  for (int k = 0; k < 4; k++)
+    for (int side = 1; side >= -1; side -= 2)
+      {
+        double year = minimum + months[k] * 0.999 / 12;
+        double lat = tf_divides_latitude (divides, 24, side, tf_time_from_year (year));
+        double x = tf_wings_x_of (&wings, &style, area, year),
+               y = tf_wings_y_of (&wings, &style, area, side * lat);
+        int cycle = 0, found = 0, handle = 9;
+        g_assert_true (
+            tf_wings_hit_divide (&wings, &style, area, x + 1, y + 1, &cycle, &found, &handle));
+        g_assert_cmpint (cycle, ==, 24);
+        g_assert_cmpint (found, ==, side);
+        g_assert_cmpint (handle, ==, k < 3 ? k : -1);
+        g_assert_false (tf_wings_hit_divide (&wings, &style, area, x, y + side * 12, &cycle, &found,
+                                             &handle));
+        wings.movable = FALSE;
+        g_assert_false (
+            tf_wings_hit_divide (&wings, &style, area, x, y, &cycle, &found, &handle));
+        wings.movable = TRUE;
+      }
+}
+
+static void
+the_chosen_handle_is_filled (void)
+{
+  TfDivideParams params;
+  tf_options_reset (tf_divide_options, &params);
+  g_autoptr (TfDivides) divides = tf_divides_new (&params);
+  TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
+  TfWings wings = wings_of (NULL, 0);
+  wings.from_year = 2006;
+  wings.to_year = 2012;
+  wings.divides = divides;
+  wings.movable = TRUE;
+  wings.hold_cycle = 24;
+  wings.hold_side = -1;
+  wings.hold_handle = 1;
+  g_auto (Picture) picture = picture_new (WIDTH, HEIGHT, style.ground);
+  tf_wings_draw (picture.cr, &wings, &style, area);
+  double year = tf_time_year (tf_cycle_minimum (24));
+  for (int side = 1; side >= -1; side -= 2)
+    {
+      double lat = tf_divides_latitude (divides, 24, side, tf_time_from_year (year));
+      int x = point (tf_wings_x_of (&wings, &style, area, year)),
+          y = point (tf_wings_y_of (&wings, &style, area, side * lat));
+      double far = colour_distance (picture_at (&picture, x, y), style.teal);
+      tf_check_between (side > 0 ? "an open handle" : "the chosen one", far, side > 0 ? 0.3 : 0,
+                        side > 0 ? 1 : 0.1);
+    }
+  g_autofree char *words = tf_wings_dup_description (&wings);
+  g_assert_nonnull (strstr (words, "cycle 24, south"));
+  g_assert_nonnull (strstr (words, "at the minimum"));
+}
+
 /* -- many ------------------------------------------------------------------------------------ */
 
 static TfWingsDot *
@@ -387,5 +457,8 @@ add_wings_tests (void)
   g_test_add_func ("/chart/wings/numbers-that-are-not-there-do-no-harm",
                    numbers_that_are_not_there_do_no_harm);
   g_test_add_func ("/chart/wings/labels-of-time-never-overlap", labels_of_time_never_overlap);
+  g_test_add_func ("/chart/wings/a-divide-is-found-by-its-handles-and-its-line",
+                   a_divide_is_found_by_its_handles_and_its_line);
+  g_test_add_func ("/chart/wings/the-chosen-handle-is-filled", the_chosen_handle_is_filled);
   g_test_add_func ("/chart/wings/the-description-counts", the_description_counts);
 }

@@ -22,3 +22,4 @@ void test_desk_add_geometry (void);
 void test_desk_add_plate (void);
 void test_desk_add_session (void);
 void test_desk_add_window (void);
+void test_desk_add_laws (void);

@@ -1,0 +1,327 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-chart-view.h"
+
+#include <adwaita.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-widget-style.h"
+
+struct _TfChartView
+{
+  GtkWidget parent;
+  const TfLawsChart *chart;
+  TfLawsCharts *charts;
+  cairo_surface_t *picture; /* what was drawn last */
+  int picture_scale;
+  gboolean stale, drawing;
+  int last; /* row opened last; -1 */
+  double x, y; /* of the cross */
+};
+
+G_DEFINE_FINAL_TYPE (TfChartView, tf_chart_view, GTK_TYPE_WIDGET)
+
+static const double label_share = 0.8;
+enum
+{
+  STEP = 12,
+  NATURAL_WIDTH = 380
+};
+
+/* -- drawing, in a thread -------------------------------------------------------------------- */
+
+typedef struct
+{
+  const TfLawsChart *chart;
+  TfLawsCharts *charts;
+  TfChartStyle style;
+  int width, height, scale;
+} Job;
+
+static void
+job_free (gpointer data)
+{
+  tf_laws_charts_unref (((Job *)data)->charts);
+  g_free (data);
+}
+
+static void
+draw (GTask *task, gpointer source, gpointer data, GCancellable *cancellable)
+{
+  const Job *job = data;
+  cairo_surface_t *picture = cairo_image_surface_create (
+      CAIRO_FORMAT_ARGB32, job->width * job->scale, job->height * job->scale);
+  cairo_t *cr = cairo_create (picture);
+  cairo_scale (cr, job->scale, job->scale);
+  job->chart->draw (cr, job->charts, &job->style, (TfArea){ 0, 0, job->width, job->height });
+  cairo_destroy (cr);
+  g_task_return_pointer (task, picture, (GDestroyNotify)cairo_surface_destroy);
+}
+
+static void
+drawn (GObject *source, GAsyncResult *result, gpointer data)
+{
+  TfChartView *self = TF_CHART_VIEW (source);
+  cairo_surface_t *picture = g_task_propagate_pointer (G_TASK (result), NULL);
+  const Job *job = g_task_get_task_data (G_TASK (result));
+  self->drawing = FALSE;
+  if (picture == NULL)
+    return;
+  g_clear_pointer (&self->picture, cairo_surface_destroy);
+  self->picture = picture;
+  self->picture_scale = job->scale;
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+}
+
+static void
+start_drawing (TfChartView *self)
+{
+  GtkWidget *widget = GTK_WIDGET (self);
+  Job *job = g_new0 (Job, 1);
+  job->chart = self->chart;
+  job->charts = tf_laws_charts_ref (self->charts);
+  job->style = tf_widget_chart_style (widget, label_share);
+  job->width = gtk_widget_get_width (widget);
+  job->height = gtk_widget_get_height (widget);
+  job->scale = gtk_widget_get_scale_factor (widget);
+  self->stale = FALSE;
+  self->drawing = TRUE;
+  g_autoptr (GTask) task = g_task_new (self, NULL, drawn, NULL);
+  g_task_set_task_data (task, job, job_free);
+  g_task_run_in_thread (task, draw);
+}
+
+static void
+redraw (TfChartView *self)
+{
+  self->stale = TRUE;
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+}
+
+static void
+snapshot_cross (TfChartView *self, GtkSnapshot *snapshot, int width, int height)
+{
+  TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
+  graphene_rect_t all = GRAPHENE_RECT_INIT (0, 0, (float)width, (float)height);
+  cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
+  cairo_move_to (cr, self->x - STEP, self->y);
+  cairo_line_to (cr, self->x + STEP, self->y);
+  cairo_move_to (cr, self->x, self->y - STEP);
+  cairo_line_to (cr, self->x, self->y + STEP);
+  tf_chart_set (cr, style.ink);
+  cairo_set_line_width (cr, 1.5);
+  cairo_stroke (cr);
+  cairo_destroy (cr);
+}
+
+static void
+snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
+{
+  TfChartView *self = TF_CHART_VIEW (widget);
+  int width = gtk_widget_get_width (widget), height = gtk_widget_get_height (widget);
+  if (width < 8 || height < 8)
+    return;
+  if (self->stale && !self->drawing && self->charts != NULL && self->chart != NULL)
+    start_drawing (self);
+  if (self->picture != NULL && self->charts != NULL)
+    tf_surface_append (snapshot, widget, self->picture, 0, 0, self->picture_scale);
+  if (gtk_widget_has_visible_focus (widget) && self->x > 0)
+    snapshot_cross (self, snapshot, width, height);
+}
+
+/* -- choosing -------------------------------------------------------------------------------- */
+
+static gboolean
+open_at (TfChartView *self, double x, double y)
+{
+  if (self->charts == NULL || self->chart == NULL)
+    return FALSE;
+  TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
+  TfArea area = { 0, 0, gtk_widget_get_width (GTK_WIDGET (self)),
+                  gtk_widget_get_height (GTK_WIDGET (self)) };
+  int row = self->chart->hit (self->charts, &style, area, x, y, self->last);
+  if (row < 0)
+    return FALSE;
+  self->last = row;
+  g_signal_emit_by_name (self, "row-chosen", row);
+  return TRUE;
+}
+
+static void
+pressed (GtkGestureClick *gesture, int n, double x, double y, TfChartView *self)
+{
+  gtk_widget_grab_focus (GTK_WIDGET (self));
+  open_at (self, x, y);
+}
+
+static gboolean
+key_pressed (GtkEventControllerKey *keys, guint key, guint code, GdkModifierType state,
+             TfChartView *self)
+{
+  double width = gtk_widget_get_width (GTK_WIDGET (self)),
+         height = gtk_widget_get_height (GTK_WIDGET (self));
+  double step = (state & GDK_SHIFT_MASK) != 0 ? 2 : STEP, dx = 0, dy = 0;
+  if (!(self->x > 0))
+    {
+      self->x = width / 2;
+      self->y = height / 2;
+    }
+  switch (key)
+    {
+    case GDK_KEY_Left:
+      dx = -step;
+      break;
+    case GDK_KEY_Right:
+      dx = step;
+      break;
+    case GDK_KEY_Up:
+      dy = -step;
+      break;
+    case GDK_KEY_Down:
+      dy = step;
+      break;
+    case GDK_KEY_Return:
+    case GDK_KEY_KP_Enter:
+    case GDK_KEY_space:
+      return open_at (self, self->x, self->y);
+    default:
+      return FALSE;
+    }
+  self->x = CLAMP (self->x + dx, 1, width);
+  self->y = CLAMP (self->y + dy, 1, height);
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+  return TRUE;
+}
+
+/* -- the widget ------------------------------------------------------------------------------ */
+
+const TfLawsChart *
+tf_chart_view_get_chart (TfChartView *self)
+{
+  return self->chart;
+}
+
+static void
+describe (TfChartView *self)
+{
+  if (self->chart == NULL)
+    return;
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL,
+                                  _ (self->chart->title), -1);
+  tf_widget_describe (GTK_WIDGET (self), self->charts != NULL
+                                             ? self->chart->dup_description (self->charts)
+                                             : g_strdup (_ ("Nothing is worked out yet.")));
+}
+
+void
+tf_chart_view_set_chart (TfChartView *self, const TfLawsChart *chart)
+{
+  g_return_if_fail (TF_IS_CHART_VIEW (self));
+  if (self->chart == chart)
+    return;
+  self->chart = chart;
+  self->last = -1;
+  g_clear_pointer (&self->picture, cairo_surface_destroy);
+  describe (self);
+  gtk_widget_queue_resize (GTK_WIDGET (self));
+  redraw (self);
+}
+
+void
+tf_chart_view_show (TfChartView *self, TfLawsCharts *charts)
+{
+  g_return_if_fail (TF_IS_CHART_VIEW (self));
+  if (charts == self->charts)
+    return;
+  g_clear_pointer (&self->charts, tf_laws_charts_unref);
+  self->charts = charts != NULL ? tf_laws_charts_ref (charts) : NULL;
+  describe (self);
+  gtk_widget_queue_resize (GTK_WIDGET (self));
+  redraw (self);
+}
+
+static GtkSizeRequestMode
+request_mode (GtkWidget *widget)
+{
+  return GTK_SIZE_REQUEST_HEIGHT_FOR_WIDTH;
+}
+
+static void
+measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minimum, int *natural,
+         int *minimum_baseline, int *natural_baseline)
+{
+  TfChartView *self = TF_CHART_VIEW (widget);
+  *minimum = 160;
+  *natural = NATURAL_WIDTH;
+  if (orientation == GTK_ORIENTATION_HORIZONTAL)
+    return;
+  TfChartStyle style = tf_widget_chart_style (widget, label_share);
+  double width = for_size > 0 ? for_size : NATURAL_WIDTH;
+  double height = self->charts != NULL && self->chart != NULL
+                      ? self->chart->height (self->charts, &style, width)
+                      : width * 0.7;
+  *minimum = *natural = (int)MAX (height, 120);
+}
+
+static void
+size_allocate (GtkWidget *widget, int width, int height, int baseline)
+{
+  TF_CHART_VIEW (widget)->stale = TRUE;
+}
+
+static void
+style_changed (TfChartView *self)
+{
+  redraw (self);
+}
+
+static void
+dispose (GObject *object)
+{
+  TfChartView *self = TF_CHART_VIEW (object);
+  g_clear_pointer (&self->picture, cairo_surface_destroy);
+  g_clear_pointer (&self->charts, tf_laws_charts_unref);
+  G_OBJECT_CLASS (tf_chart_view_parent_class)->dispose (object);
+}
+
+static void
+tf_chart_view_class_init (TfChartViewClass *klass)
+{
+  GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
+  G_OBJECT_CLASS (klass)->dispose = dispose;
+  widget->snapshot = snapshot;
+  widget->measure = measure;
+  widget->get_request_mode = request_mode;
+  widget->size_allocate = size_allocate;
+  gtk_widget_class_set_css_name (widget, "chart");
+  gtk_widget_class_set_accessible_role (widget, GTK_ACCESSIBLE_ROLE_IMG);
+  g_signal_new ("row-chosen", TF_TYPE_CHART_VIEW, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL,
+                G_TYPE_NONE, 1, G_TYPE_INT);
+}
+
+static void
+tf_chart_view_init (TfChartView *self)
+{
+  self->last = -1;
+  gtk_widget_set_focusable (GTK_WIDGET (self), TRUE);
+  GtkGesture *click = gtk_gesture_click_new ();
+  g_signal_connect (click, "pressed", G_CALLBACK (pressed), self);
+  gtk_widget_add_controller (GTK_WIDGET (self), GTK_EVENT_CONTROLLER (click));
+  GtkEventController *keys = gtk_event_controller_key_new ();
+  g_signal_connect (keys, "key-pressed", G_CALLBACK (key_pressed), self);
+  gtk_widget_add_controller (GTK_WIDGET (self), keys);
+  AdwStyleManager *manager = adw_style_manager_get_default ();
+  g_signal_connect_object (manager, "notify::dark", G_CALLBACK (style_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (manager, "notify::high-contrast", G_CALLBACK (style_changed), self,
+                           G_CONNECT_SWAPPED);
+}
+
+GtkWidget *
+tf_chart_view_new (const TfLawsChart *chart)
+{
+  TfChartView *self = g_object_new (TF_TYPE_CHART_VIEW, NULL);
+  tf_chart_view_set_chart (self, chart);
+  return GTK_WIDGET (self);
+}

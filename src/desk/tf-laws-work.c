@@ -1,0 +1,295 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-laws-work.h"
+
+#include "tf-lane.h"
+
+enum
+{
+  MANY = 30000 /* rows from which on other choices are not worked out while a divide is in hand */
+};
+
+typedef struct
+{
+  guint serial, age;
+  TfStudy *study;
+  TfLawsAsk ask;
+  TfStudyTaken *rows; /* NULL: to be read */
+  TfLawsAnswer *quick; /* of this question; NULL: not answered yet */
+} Question;
+
+struct _TfLawsWork
+{
+  TfLane *lane;
+  GCancellable *cancellable;
+  TfLawsAnswered answered;
+  gpointer data;
+  Question *waiting; /* the newest that is not begun */
+  gboolean reading, drawing;
+  guint serial; /* of the newest question */
+  guint age;    /* rises when the ledger changes */
+  TfStudyTaken *rows;
+  Question *to_draw; /* the newest whose draws are not begun */
+};
+
+static void
+question_free (gpointer data)
+{
+  Question *question = data;
+  if (question == NULL)
+    return;
+  tf_study_free (question->study);
+  tf_study_taken_unref (question->rows);
+  tf_laws_answer_unref (question->quick);
+  g_free (question);
+}
+
+/* -- answers --------------------------------------------------------------------------------- */
+
+static void
+answer_clear (gpointer data)
+{
+  TfLawsAnswer *answer = data;
+  tf_study_free (answer->study);
+  tf_findings_free (answer->findings);
+  tf_laws_charts_unref (answer->charts);
+  g_free (answer->words);
+  g_free (answer->trouble);
+}
+
+TfLawsAnswer *
+tf_laws_answer_ref (TfLawsAnswer *answer)
+{
+  return g_atomic_rc_box_acquire (answer);
+}
+
+void
+tf_laws_answer_unref (TfLawsAnswer *answer)
+{
+  if (answer != NULL)
+    g_atomic_rc_box_release_full (answer, answer_clear);
+}
+
+static TfLawsAnswer *
+answer_new (const Question *question, TfFindingsDepth depth)
+{
+  TfLawsAnswer *answer = g_atomic_rc_box_new0 (TfLawsAnswer);
+  answer->study = tf_study_copy (question->study);
+  answer->stretch = question->ask.stretch;
+  answer->depth = depth;
+  return answer;
+}
+
+static TfLawsAnswer *
+work_out (const Question *question, TfFindingsDepth depth, TfLedger *ledger)
+{
+  TfLawsAnswer *answer = answer_new (question, depth);
+  answer->findings
+      = tf_study_again (question->rows, question->study, &question->ask.stretch, depth, ledger,
+                        question->quick != NULL ? question->quick->findings : NULL);
+  TfLawsFacts facts = { .sample = answer->findings->sample,
+                        .verdicts = answer->findings->verdicts,
+                        .hale = answer->findings->hale,
+                        .joy = answer->findings->joy,
+                        .emergence = answer->findings->emergence,
+                        .hale_params = question->study->hale,
+                        .joy_params = question->study->joy,
+                        .all_relations = question->ask.all_relations };
+  answer->charts = tf_laws_charts_new (&facts);
+  answer->words = tf_findings_dup_words (answer->findings, question->study);
+  answer->complete = depth == TF_FINDINGS_COMPLETE || question->ask.moving;
+  return answer;
+}
+
+/* -- the draws: a thread of their own, so that the next question need not wait for them --------- */
+
+static void draw_next (TfLawsWork *work);
+
+static void
+draw (GTask *task, gpointer source, gpointer data, GCancellable *cancellable)
+{
+  g_task_return_pointer (task, work_out (data, TF_FINDINGS_COMPLETE, NULL),
+                         (GDestroyNotify)tf_laws_answer_unref);
+}
+
+static void
+drawn (GObject *source, GAsyncResult *result, gpointer data)
+{
+  g_autoptr (TfLawsAnswer) answer = g_task_propagate_pointer (G_TASK (result), NULL);
+  if (g_cancellable_is_cancelled (g_task_get_cancellable (G_TASK (result))))
+    return; /* the work is gone */
+  TfLawsWork *work = data;
+  const Question *question = g_task_get_task_data (G_TASK (result));
+  work->drawing = FALSE;
+  if (answer != NULL && question->serial == work->serial)
+    work->answered (answer, work->data);
+  draw_next (work);
+}
+
+static void
+draw_next (TfLawsWork *work)
+{
+  if (work->drawing || work->to_draw == NULL)
+    return;
+  g_autoptr (GTask) task = g_task_new (NULL, work->cancellable, drawn, work);
+  g_task_set_return_on_cancel (task, FALSE);
+  g_task_set_task_data (task, g_steal_pointer (&work->to_draw), question_free);
+  work->drawing = TRUE;
+  g_task_run_in_thread (task, draw);
+}
+
+/* -- the quick answer ------------------------------------------------------------------------ */
+
+typedef struct
+{
+  TfLawsAnswer *answer;
+  Question *question; /* its rows were read */
+} Quick;
+
+static void
+quick_free (gpointer data)
+{
+  Quick *quick = data;
+  tf_laws_answer_unref (quick->answer);
+  question_free (quick->question);
+  g_free (quick);
+}
+
+static Question *
+question_copy (const Question *question)
+{
+  Question *copy = g_memdup2 (question, sizeof *question);
+  copy->study = tf_study_copy (question->study);
+  copy->rows = question->rows != NULL ? tf_study_taken_ref (question->rows) : NULL;
+  copy->quick = NULL;
+  return copy;
+}
+
+static TfLawsAnswer *
+read_rows (Question *question, TfLedger *ledger)
+{
+  g_autoptr (GError) error = NULL;
+  question->rows = tf_study_take (question->study, ledger, &error);
+  if (question->rows != NULL)
+    return NULL;
+  TfLawsAnswer *answer = answer_new (question, TF_FINDINGS_QUICK);
+  answer->empty = g_error_matches (error, TF_STUDY_ERROR, TF_STUDY_ERROR_EMPTY);
+  answer->trouble = g_strdup (error->message);
+  answer->complete = TRUE;
+  return answer;
+}
+
+static gpointer
+quickly (TfLedger *ledger, gpointer data, GError **error)
+{
+  Quick *quick = g_new0 (Quick, 1);
+  quick->question = question_copy (data);
+  if (quick->question->rows == NULL)
+    quick->answer = read_rows (quick->question, ledger);
+  if (quick->answer != NULL)
+    return quick;
+  gboolean many = tf_study_taken_get_n (quick->question->rows) > MANY;
+  quick->answer = work_out (quick->question, many && quick->question->ask.moving
+                                                 ? TF_FINDINGS_QUICK
+                                                 : TF_FINDINGS_WHAT_IF,
+                            ledger);
+  return quick;
+}
+
+static void begin_next (TfLawsWork *work);
+
+static void
+begun (GObject *source, GAsyncResult *result, gpointer data)
+{
+  g_autoptr (GError) error = NULL;
+  Quick *quick = tf_lane_finish (result, &error);
+  if (g_cancellable_is_cancelled (g_task_get_cancellable (G_TASK (result))))
+    {
+      g_clear_pointer (&quick, quick_free);
+      return;
+    }
+  TfLawsWork *work = data;
+  work->reading = FALSE;
+  if (quick != NULL)
+    {
+      if (quick->question->rows != NULL && quick->question->age == work->age)
+        g_clear_pointer (&work->rows, tf_study_taken_unref);
+      if (quick->question->rows != NULL && quick->question->age == work->age)
+        work->rows = tf_study_taken_ref (quick->question->rows);
+      /* while a divide moves each answer is shown, the newest as it comes */
+      if (quick->question->serial == work->serial || quick->question->ask.moving)
+        work->answered (quick->answer, work->data);
+      if (!quick->answer->complete && quick->question->serial == work->serial)
+        {
+          g_clear_pointer (&work->to_draw, question_free);
+          work->to_draw = g_steal_pointer (&quick->question);
+          work->to_draw->quick = tf_laws_answer_ref (quick->answer);
+          draw_next (work);
+        }
+      quick_free (quick);
+    }
+  begin_next (work);
+}
+
+static void
+begin_next (TfLawsWork *work)
+{
+  if (work->reading || work->waiting == NULL)
+    return;
+  Question *question = g_steal_pointer (&work->waiting);
+  if (work->rows != NULL && tf_study_taken_serves (work->rows, question->study))
+    question->rows = tf_study_taken_ref (work->rows);
+  work->reading = TRUE;
+  tf_lane_push (work->lane, NULL, work->cancellable, quickly, question, question_free, quick_free,
+                begun, work);
+}
+
+/* -- the work -------------------------------------------------------------------------------- */
+
+TfLawsWork *
+tf_laws_work_new (const char *path, TfLawsAnswered answered, gpointer data)
+{
+  g_return_val_if_fail (path != NULL && answered != NULL, NULL);
+  TfLawsWork *work = g_new0 (TfLawsWork, 1);
+  work->lane = tf_lane_new (path, 0);
+  work->cancellable = g_cancellable_new ();
+  work->answered = answered;
+  work->data = data;
+  return work;
+}
+
+void
+tf_laws_work_free (TfLawsWork *work)
+{
+  if (work == NULL)
+    return;
+  g_cancellable_cancel (work->cancellable);
+  tf_lane_close (work->lane);
+  g_clear_object (&work->cancellable);
+  question_free (work->waiting);
+  question_free (work->to_draw);
+  tf_study_taken_unref (work->rows);
+  g_free (work);
+}
+
+void
+tf_laws_work_ask (TfLawsWork *work, const TfStudy *study, const TfLawsAsk *ask)
+{
+  g_return_if_fail (work != NULL && study != NULL && ask != NULL);
+  question_free (work->waiting);
+  work->waiting = g_new0 (Question, 1);
+  work->waiting->serial = ++work->serial;
+  work->waiting->age = work->age;
+  work->waiting->study = tf_study_copy (study);
+  work->waiting->ask = *ask;
+  begin_next (work);
+}
+
+void
+tf_laws_work_forget (TfLawsWork *work)
+{
+  g_return_if_fail (work != NULL);
+  work->age++;
+  g_clear_pointer (&work->rows, tf_study_taken_unref);
+}

@@ -1,0 +1,40 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* The laws' part of TfSession, for tf-session-*.c alone. */
+
+#include "tf-session-laws.h"
+#include "tf-session-private.h"
+
+G_BEGIN_DECLS
+
+struct _TfSessionLaws
+{
+  TfStudy *study; /* with the divides of the ledger */
+  TfLawsWork *work;
+  TfLawsAnswer *answer;
+  gboolean shown, awaits, all_relations;
+
+  TfDivideHold hold;
+  TfDivides *moved;    /* all divides with the one in hand; NULL: none is in hand */
+  guint keeping;       /* divides on their way into the ledger */
+  gboolean show_polarity, was_shown; /* was_shown: at any time while the one in hand moved */
+};
+
+void tf_session_laws_init (TfSession *session);
+void tf_session_laws_finalize (TfSession *session);
+/** tf_session_laws_close: the ledger is let go. */
+void tf_session_laws_close (TfSession *session);
+void tf_session_ask_laws (TfSession *session);
+/** tf_session_forget_laws: the ledger changed. */
+void tf_session_forget_laws (TfSession *session);
+/** tf_session_take_divides: as a reading of the ledger brings them, with the judge made of them. */
+void tf_session_take_divides (TfSession *session, const TfStudy *read, TfJudge *judge);
+/** tf_session_judge_divide: dots that came from the ledger, judged by what is in hand or on its way. */
+void tf_session_judge_divide (TfSession *session);
+/** tf_session_divide_saved: the deed is in the ledger, or will not come. */
+void tf_session_divide_saved (TfSession *session);
+
+G_END_DECLS

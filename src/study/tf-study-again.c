@@ -1,0 +1,131 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "tf-study-again.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "tf-study-private.h"
+
+struct _TfStudyTaken
+{
+  GPtrArray *rows; /* TfRow */
+  TfSample *all;
+  double floor;
+  gboolean with_hints;
+};
+
+gboolean
+tf_stretch_is_all (const TfStretch *s)
+{
+  return isnan (s->from_year) && isnan (s->to_year) && isnan (s->low_deg) && isnan (s->high_deg);
+}
+
+TfStudy *
+tf_study_copy (const TfStudy *study)
+{
+  TfStudy *copy = g_memdup2 (study, sizeof *study);
+  copy->name = g_strdup (study->name);
+  copy->divides = study->divides != NULL ? tf_divides_ref (study->divides) : NULL;
+  copy->divides_shown = g_strdup (study->divides_shown);
+  return copy;
+}
+
+/* -- rows ------------------------------------------------------------------------------------ */
+
+TfStudyTaken *
+tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
+  double floor = tf_study_even_floor (ledger, NULL);
+  GPtrArray *rows = tf_study_read_rows (study, ledger, floor, error);
+  if (rows == NULL)
+    return NULL;
+  TfStudyTaken *taken = g_atomic_rc_box_new0 (TfStudyTaken);
+  taken->rows = rows;
+  taken->all = tf_study_sample_rows (rows);
+  taken->floor = floor;
+  taken->with_hints = study->sieve.with_hints;
+  return taken;
+}
+
+TfStudyTaken *
+tf_study_taken_ref (TfStudyTaken *taken)
+{
+  return g_atomic_rc_box_acquire (taken);
+}
+
+static void
+taken_clear (gpointer data)
+{
+  TfStudyTaken *taken = data;
+  g_ptr_array_unref (taken->rows);
+  tf_sample_free (taken->all);
+}
+
+void
+tf_study_taken_unref (TfStudyTaken *taken)
+{
+  if (taken != NULL)
+    g_atomic_rc_box_release_full (taken, taken_clear);
+}
+
+gboolean
+tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study)
+{
+  return !taken->with_hints == !study->sieve.with_hints;
+}
+
+guint
+tf_study_taken_get_n (const TfStudyTaken *taken)
+{
+  return tf_sample_get_n (taken->all);
+}
+
+static gboolean
+within (const TfStretch *s, const TfSampleRow *row)
+{
+  double year = tf_time_year (row->time);
+  return !(year < s->from_year) && !(year > s->to_year) && !(row->lat_deg < s->low_deg)
+         && !(row->lat_deg > s->high_deg);
+}
+
+static TfSample *
+narrow (const TfSample *all, const TfStretch *stretch)
+{
+  TfSample *part = tf_sample_new ();
+  for (guint k = 0; k < tf_sample_get_n (all); k++)
+    if (within (stretch, tf_sample_get (all, k)))
+      tf_sample_add (part, tf_sample_get (all, k));
+  return part;
+}
+
+/* -- findings -------------------------------------------------------------------------------- */
+
+static void
+take_what_if (TfFindings *out, const TfFindings *before)
+{
+  g_array_unref (out->what_if);
+  out->what_if = g_array_copy (before->what_if);
+  memcpy (out->cycle_choice, before->cycle_choice, sizeof out->cycle_choice);
+}
+
+TfFindings *
+tf_study_again (const TfStudyTaken *taken, const TfStudy *study, const TfStretch *stretch,
+                TfFindingsDepth depth, TfLedger *ledger, const TfFindings *before)
+{
+  g_return_val_if_fail (taken != NULL && study != NULL && stretch != NULL, NULL);
+  gboolean all = tf_stretch_is_all (stretch);
+  g_autoptr (TfStudy) own = tf_study_copy (study);
+  if (depth < TF_FINDINGS_COMPLETE)
+    own->hale.draws = own->joy.draws = 0;
+  g_autoptr (TfSample) part = all ? NULL : narrow (taken->all, stretch);
+  const TfStudyRows rows = { taken->rows, all ? taken->all : part };
+  /* other measures and the hints are read for the whole ledger, not for a stretch */
+  TfFindings *findings = tf_study_run_rows (own, &rows, all ? ledger : NULL, taken->floor,
+                                            depth == TF_FINDINGS_WHAT_IF);
+  if (before != NULL && depth == TF_FINDINGS_COMPLETE)
+    take_what_if (findings, before);
+  return findings;
+}

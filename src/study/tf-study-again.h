@@ -1,0 +1,51 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* The same rows under other choices: what the window asks while somebody turns the knobs. A ledger's
+ * rows are read once; sieve, sampling rule, divides and methods then act on them in memory. */
+
+#include "tf-study.h"
+
+G_BEGIN_DECLS
+
+/** TfStretch: a stretch of time and a band of latitude, both ends included. NaN: open. */
+typedef struct
+{
+  double from_year, to_year;
+  double low_deg, high_deg;
+} TfStretch;
+gboolean tf_stretch_is_all (const TfStretch *stretch);
+
+/** tf_study_copy: (transfer full) */
+TfStudy *tf_study_copy (const TfStudy *study);
+
+/** TfStudyTaken: rows as they were read; immutable, reference counted, any thread may use it. */
+typedef struct _TfStudyTaken TfStudyTaken;
+TfStudyTaken *tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error);
+TfStudyTaken *tf_study_taken_ref (TfStudyTaken *taken);
+void tf_study_taken_unref (TfStudyTaken *taken);
+/** tf_study_taken_serves: whether @study needs no other rows than these. */
+gboolean tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study);
+guint tf_study_taken_get_n (const TfStudyTaken *taken);
+
+/** TfFindingsDepth: how much is worked out. */
+typedef enum
+{
+  TF_FINDINGS_QUICK,    /* no draws, nothing under other choices */
+  TF_FINDINGS_WHAT_IF,  /* the other choices, no draws */
+  TF_FINDINGS_COMPLETE, /* the draws; the other choices are those of @before, which have none */
+} TfFindingsDepth;
+/**
+ * tf_study_again: the laws of the rows that lie in the stretch, under @study.
+ * @ledger: (nullable): for other choices that need other measures
+ * @before: (nullable): findings of the same question with its other choices
+ */
+TfFindings *tf_study_again (const TfStudyTaken *taken, const TfStudy *study,
+                            const TfStretch *stretch, TfFindingsDepth depth, TfLedger *ledger,
+                            const TfFindings *before);
+
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfStudyTaken, tf_study_taken_unref)
+
+G_END_DECLS

@@ -1,0 +1,110 @@
+"""laws.py: the Laws bench by hand, by keyboard and by ear: a divide is dragged and the share that is read changes."""
+import os
+import re
+import subprocess
+import sys
+import tempfile
+
+import gi
+
+gi.require_version("GdkPixbuf", "2.0")
+from gi.repository import GdkPixbuf  # noqa: E402
+
+import harness  # noqa: E402
+from accessible_names import expect_named  # noqa: E402
+from harness import Failed, Window, scenario  # noqa: E402
+
+TEAL = (0x0D, 0x6B, 0x66)
+SHARE = re.compile(r"Of ([\d,]+) picks.*?, (\d+) \(([\d.,]+) %")
+MOVED = "SELECT count(*) FROM divide"
+
+
+def made(given, folder, n):
+    ledger = os.path.join(folder, "many.ledger")
+    frame = os.path.join(given.source, "data-demo", "frames", "brindle-20131012-0600.fits")
+    done = subprocess.run([sys.executable, os.path.join(given.source, "tests", "bench", "many-marks.py"), given.run, frame,
+                           ledger, str(n), "40"], stdout=subprocess.PIPE, stderr=subprocess.STDOUT, text=True,
+                          env=dict(os.environ, XDG_STATE_HOME=os.path.join(folder, "state")), timeout=120)
+    if done.returncode != 0:
+        raise Failed(f"many-marks: {done.stdout[-400:]}")
+    return ledger
+
+
+def share(w):
+    """(picks with a verdict, that break, per cent) as the words say."""
+    found = SHARE.search(w.texts().replace("\n", " "))
+    return found.groups() if found else None
+
+
+def open_laws(w):
+    w.action("set-person", w.text("Mara"))
+    w.action("bench", w.text("laws"))
+    w.wait("the share in words", lambda: share(w) is not None)
+    return share(w)
+
+
+def chosen_handle(w):
+    """Where the filled handle is, in pixels of the display: a block of the divides' colour."""
+    path = os.path.join(w.base, "wings.png")
+    w.picture(path)
+    picture = GdkPixbuf.Pixbuf.new_from_file(path)
+    pixels, stride, parts = picture.get_pixels(), picture.get_rowstride(), picture.get_n_channels()
+    left, top, width, height = (int(v) for v in w.on_screen(w.find("Wings")))
+
+    def teal(x, y):
+        at = y * stride + x * parts
+        return max(abs(pixels[at + k] - TEAL[k]) for k in range(3)) < 12
+    for y in range(top + 3, min(top + height, picture.get_height()) - 3):
+        for x in range(left + 3, min(left + width, picture.get_width()) - 3):
+            if teal(x, y) and all(teal(x + dx, y + dy) for dx in (-2, 0, 2) for dy in (-2, 0, 2)):
+                return x, y
+    return None
+
+
+@scenario("a divide is dragged: the share that is read changes with it, and back by undo")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-laws-") as folder:
+        ledger = made(given, folder, 900)
+        with Window(given, [ledger]) as w:
+            before = open_laws(w)
+            w.action("choose-divide", w.glib.Variant("(ii)", (23, 1)))
+            w.action("next-handle")
+            w.action("next-handle")
+            w.wait("the wings to say which divide", lambda: "cycle 23, north" in (w.description("Wings") or ""))
+            w.wait("the handle to be seen", lambda: chosen_handle(w) is not None)
+            x, y = chosen_handle(w)
+            w.drag([(x, y - k) for k in range(0, 44, 2)])
+            w.wait_value("moved divides", ledger, MOVED, 1)
+            w.wait("the share to change", lambda: share(w) not in (None, before))
+            w.wait_text("Divides were moved by hand: 23 N")
+            kinds = [row[0] for row in w.rows(ledger, "SELECT kind FROM journal")]
+            if "divide" not in kinds:
+                raise Failed(f"the journal has {kinds}")
+            w.action("undo")
+            w.wait_value("moved divides after undo", ledger, MOVED, 0)
+            w.wait("the share to be what it was", lambda: share(w) == before)
+
+
+@scenario("by keyboard a divide is chosen, moved, kept, and set back to computed; everything has a name")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-laws-keys-") as folder:
+        ledger = made(given, folder, 300)
+        with Window(given, [ledger]) as w:
+            before = open_laws(w)
+            w.wait("the charts to be described", lambda: re.search(r"all: [\d.,]+ % \(", w.texts()))
+            expect_named(w, "on the Laws bench")
+            w.click_on(w.find("Wings"))  # takes the keyboard; a click on no dot chooses nothing
+            w.action("bench", w.text("laws"))
+            w.wait("the wings to have the keyboard", lambda: w.focused_name() == "Wings")
+            w.key("d")
+            w.wait("a divide to be chosen", lambda: "Divide before cycle" in (w.description("Wings") or ""))
+            w.key(*["Up"] * 24)
+            w.wait("it to be in hand", lambda: "in hand" in (w.description("Wings") or ""))
+            w.key("Return")
+            w.wait_value("moved divides", ledger, MOVED, 1)
+            w.key("BackSpace")
+            w.wait_value("moved divides, computed again", ledger, MOVED, 0)
+            w.wait("the share to be what it was", lambda: share(w) == before)
+
+
+harness.main()
