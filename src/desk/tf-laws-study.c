@@ -17,9 +17,11 @@ typedef struct
 
 static const Part parts[] = {
   { N_ ("Sieve"), tf_sieve_options, G_STRUCT_OFFSET (TfStudy, sieve), TRUE },
+  { N_ ("One mark a passage"), tf_sampling_options, G_STRUCT_OFFSET (TfStudy, sampling), FALSE },
   { N_ ("Joy’s law"), tf_joy_options, G_STRUCT_OFFSET (TfStudy, joy), FALSE },
   { N_ ("Cycle by"), tf_divide_options, G_STRUCT_OFFSET (TfStudy, divide), FALSE },
   { N_ ("Verdict"), tf_verdict_options, G_STRUCT_OFFSET (TfStudy, verdict), FALSE },
+  { N_ ("Since emergence"), tf_emergence_options, G_STRUCT_OFFSET (TfStudy, emergence), FALSE },
   { N_ ("Intervals of shares"), tf_hale_options, G_STRUCT_OFFSET (TfStudy, hale), FALSE },
 };
 
