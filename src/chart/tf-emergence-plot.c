@@ -235,7 +235,7 @@ tf_emergence_plot_dup_description (const TfLawsCharts *charts)
 double
 tf_emergence_plot_height (const TfLawsCharts *charts, const TfChartStyle *style, double width)
 {
-  return width * 0.95 + foot_height (style);
+  return MIN (width * 0.95, style->text_pt * 46) + foot_height (style);
 }
 
 gboolean

@@ -190,7 +190,7 @@ tf_joy_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *s
   TfPlot plot = plot_of (charts, style, area);
   double text = style->text_pt;
   cairo_save (cr);
-  tf_plot_draw_y (cr, &plot, style, tf_plot_step (plot.y0, plot.y1, plot.plot.height, text * 2.4),
+  tf_plot_draw_y (cr, &plot, style, tf_plot_step (plot.y0, plot.y1, plot.plot.height, text * 3.2),
                   tf_tick_degrees, _ ("axis tilt, + leader equatorward"));
   tf_plot_draw_x (cr, &plot, style, tf_plot_step (plot.x0, plot.x1, plot.plot.width, text * 3.4),
                   tf_tick_degrees, NULL);
@@ -242,7 +242,7 @@ tf_joy_plot_dup_description (const TfLawsCharts *charts)
 double
 tf_joy_plot_height (const TfLawsCharts *charts, const TfChartStyle *style, double width)
 {
-  return width * 0.78 + legend_height (charts, style);
+  return MIN (width * 0.78, style->text_pt * 34) + legend_height (charts, style);
 }
 
 gboolean

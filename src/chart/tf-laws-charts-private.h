@@ -8,6 +8,7 @@
 #include "tf-bin.h"
 #include "tf-laws-charts.h"
 #include "tf-plot-private.h"
+#include "tf-wings.h"
 
 G_BEGIN_DECLS
 
@@ -61,6 +62,10 @@ struct _TfLawsCharts
   TfEmergenceParams emergence;
   guint n_born;
   GArray *ages[TF_EMERGENCE_SIDES]; /* of TfEmergenceAge */
+
+  TfWingsDot *dots;
+  TfDivides *divides;
+  TfWings wings; /* of these */
 };
 
 /** tf_laws_fit_tilt: the tilt that the fit puts at |lat|, deg; @slope may be another one. */
@@ -107,6 +112,15 @@ char *tf_emergence_plot_dup_description (const TfLawsCharts *charts);
 double tf_emergence_plot_height (const TfLawsCharts *charts, const TfChartStyle *style,
                                  double width);
 gboolean tf_emergence_plot_has (const TfLawsCharts *charts);
+
+void tf_wings_figure_make (TfLawsCharts *charts, const TfLawsFacts *facts);
+void tf_wings_figure_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style,
+                           TfArea area);
+int tf_wings_figure_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                         double x, double y, int after);
+char *tf_wings_figure_dup_description (const TfLawsCharts *charts);
+double tf_wings_figure_height (const TfLawsCharts *charts, const TfChartStyle *style, double width);
+gboolean tf_wings_figure_has (const TfLawsCharts *charts);
 
 #pragma GCC visibility pop
 

@@ -25,6 +25,8 @@ const TfLawsChart tf_laws_chart_table[] = {
     tf_separation_plot_has },
   { "emergence", N_ ("Since emergence"), tf_emergence_plot_draw, tf_emergence_plot_hit,
     tf_emergence_plot_dup_description, tf_emergence_plot_height, tf_emergence_plot_has },
+  { "wings", N_ ("Wings of this study"), tf_wings_figure_draw, tf_wings_figure_hit,
+    tf_wings_figure_dup_description, tf_wings_figure_height, tf_wings_figure_has },
   { NULL },
 };
 
@@ -200,6 +202,7 @@ tf_laws_charts_new (const TfLawsFacts *facts)
   charts->fit = find_fit (facts);
   take_hale (charts, facts);
   take_emergence (charts, facts->emergence);
+  tf_wings_figure_make (charts, facts);
   points_init (&charts->tilts, charts->n);
   points_init (&charts->residuals, charts->n);
   g_autofree double *tilts = g_new (double, charts->n + 1);
@@ -226,6 +229,9 @@ charts_clear (gpointer data)
 {
   TfLawsCharts *charts = data;
   g_free (charts->rows);
+  g_free (charts->dots);
+  if (charts->divides != NULL)
+    tf_divides_unref (charts->divides);
   g_array_unref (charts->hale);
   for (int side = 0; side < TF_EMERGENCE_SIDES; side++)
     g_array_unref (charts->ages[side]);

@@ -13,6 +13,7 @@
  */
 
 #include "tf-chart.h"
+#include "tf-divide.h"
 #include "tf-emergence.h"
 #include "tf-hale.h"
 #include "tf-joy.h"
@@ -27,6 +28,8 @@ typedef struct
   const GArray *hale;        /* TfHaleRow */
   const GArray *joy;         /* TfJoyFit; that of all cycles and both hemispheres is drawn */
   const TfEmergence *emergence; /* nullable */
+  TfDivides *divides;           /* nullable */
+  gboolean plain;               /* a divide is in hand: dots plain, verdicts hidden */
   TfHaleParams hale_params;
   TfJoyParams joy_params;
   gboolean all_relations;    /* every published relation; else the first magnetic and the first of

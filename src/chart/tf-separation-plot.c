@@ -127,7 +127,7 @@ tf_separation_plot_dup_description (const TfLawsCharts *charts)
 double
 tf_separation_plot_height (const TfLawsCharts *charts, const TfChartStyle *style, double width)
 {
-  return width * 0.7 + style->text_pt * 3.6;
+  return MIN (width * 0.7, style->text_pt * 32) + style->text_pt * 3.6;
 }
 
 gboolean

@@ -156,7 +156,7 @@ tf_tilt_bars_dup_description (const TfLawsCharts *charts)
 double
 tf_tilt_bars_height (const TfLawsCharts *charts, const TfChartStyle *style, double width)
 {
-  return width * 0.6 + style->text_pt * 3.6;
+  return MIN (width * 0.6, style->text_pt * 28) + style->text_pt * 3.6;
 }
 
 gboolean

@@ -6,6 +6,7 @@
 
 #include <glib/gi18n-lib.h>
 #include <math.h>
+#include <stdlib.h>
 
 #include "tf-chart-private.h"
 #include "tf-verdict.h"
@@ -128,6 +129,24 @@ tf_wings_hit (const TfWings *wings, const TfChartStyle *style, TfArea area, doub
         }
     }
   return found;
+}
+
+static int
+compare_dots (gconstpointer a, gconstpointer b)
+{
+  const TfWingsDot *p = a, *q = b;
+  int by_year = (p->year > q->year) - (p->year < q->year);
+  return by_year != 0 ? by_year : (p->id > q->id) - (p->id < q->id);
+}
+
+void
+tf_wings_sort (TfWingsDot *dots, guint n)
+{
+  guint k = 1;
+  while (k < n && dots[k - 1].year <= dots[k].year)
+    k++;
+  if (k < n)
+    qsort (dots, n, sizeof *dots, compare_dots);
 }
 
 void

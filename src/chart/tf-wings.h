@@ -61,6 +61,8 @@ double tf_wings_x_of (const TfWings *wings, const TfChartStyle *style, TfArea ar
 double tf_wings_y_of (const TfWings *wings, const TfChartStyle *style, TfArea area, double lat_deg);
 /** tf_wings_is_dense: whether the view is drawn as a density picture. */
 gboolean tf_wings_is_dense (const TfWings *wings, const TfChartStyle *style, TfArea area);
+/** tf_wings_sort: by year, as TfWings wants its dots; quick when they are nearly so. */
+void tf_wings_sort (TfWingsDot *dots, guint n);
 /** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year
  * when there are none. */
 void tf_wings_fit (TfWings *wings, double year);

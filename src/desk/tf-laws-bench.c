@@ -277,6 +277,7 @@ tf_laws_bench_init (TfLawsBench *self)
     add_chart (self, chart);
   self->large = TF_CHART_VIEW (tf_chart_view_new (&tf_laws_chart_table[0]));
   g_signal_connect_object (self->large, "row-chosen", G_CALLBACK (row_chosen), self, 0);
+  gtk_widget_set_vexpand (GTK_WIDGET (self->large), TRUE);
   gtk_box_append (self->one, GTK_WIDGET (self->large));
   self->rows = g_list_store_new (TF_TYPE_WHAT_IF_ITEM);
   g_autoptr (GtkNoSelection) model

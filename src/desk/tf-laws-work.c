@@ -88,11 +88,14 @@ work_out (const Question *question, TfFindingsDepth depth, TfLedger *ledger)
   answer->findings
       = tf_study_again (question->rows, question->study, &question->ask.stretch, depth, ledger,
                         question->quick != NULL ? question->quick->findings : NULL);
+  g_autoptr (TfDivides) computed = tf_divides_new (&question->study->divide);
   TfLawsFacts facts = { .sample = answer->findings->sample,
                         .verdicts = answer->findings->verdicts,
                         .hale = answer->findings->hale,
                         .joy = answer->findings->joy,
                         .emergence = answer->findings->emergence,
+                        .divides = answer->study->divides != NULL ? answer->study->divides : computed,
+                        .plain = question->ask.plain,
                         .hale_params = question->study->hale,
                         .joy_params = question->study->joy,
                         .all_relations = question->ask.all_relations };

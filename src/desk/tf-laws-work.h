@@ -45,6 +45,7 @@ typedef struct
 {
   TfStretch stretch;
   gboolean moving;        /* a divide is in hand: the quick answer, then nothing that takes draws */
+  gboolean plain;         /* verdicts hidden on its wings */
   gboolean all_relations; /* on the Joy plot */
 } TfLawsAsk;
 /** tf_laws_work_ask: @study: copied. */

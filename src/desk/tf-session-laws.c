@@ -73,6 +73,7 @@ tf_session_ask_laws (TfSession *self)
   g_autoptr (TfStudy) study = dup_study_now (self);
   const TfLawsAsk ask = { .stretch = tf_session_get_stretch (self),
                           .moving = laws->hold.in_hand,
+                          .plain = tf_session_is_plain (self),
                           .all_relations = laws->all_relations };
   laws->awaits = TRUE;
   tf_laws_work_ask (laws->work, study, &ask);

@@ -239,6 +239,46 @@ many_regions_are_drawn_in_no_time (void)
                     grey (picture_at (&picture, WIDTH / 2 - 30, (int)(area.height * 0.40))), 0, 0.8);
 }
 
+/* A region that grows on the disk: tilt and separation by age; the median of each age is drawn where
+ * it is. */
+static void
+emergence_is_drawn_by_age (void)
+{
+  g_autoptr (TfSample) every = tf_sample_new ();
+  for (guint passage = 1; passage <= 9; passage++)
+    for (int half = 0; half < 12; half++)
+      {
+        TfSampleRow row;
+        tf_sample_row_init (&row);
+        row.time = (TfTime){ 4e8 + passage * 1e6 + half * 43200 };
+        row.region = row.passage = passage;
+        row.lat_deg = 15;
+        row.cmd_deg = -50 + 7 * half;
+        row.mu = 0.8;
+        row.axis_tilt_deg = 2 + half;
+        row.separation_deg = 1 + 0.3 * half;
+        row.flux_mx = 1e20 + 5e20 * half;
+        row.born = 1;
+        tf_sample_add (every, &row);
+      }
+  TfEmergenceParams params;
+  tf_options_reset (tf_emergence_options, &params);
+  g_autoptr (TfEmergence) emergence = tf_emergence_new (every, &params);
+  g_assert_cmpuint (emergence->passages, ==, 9);
+  g_auto (MadeStudy) study = made_study_new (50, 1);
+  study.facts.emergence = emergence;
+  g_autoptr (TfLawsCharts) charts = tf_laws_charts_new (&study.facts);
+  TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
+  const TfLawsChart *chart = chart_named ("emergence");
+  TfArea area;
+  g_assert_true (chart->has (charts));
+  g_auto (Picture) picture = draw (chart, charts, &style, &area);
+  g_assert_cmpuint (picture_count (&picture, style.ink, 0.2), >, 12 * 20);  /* rings of all */
+  g_assert_cmpuint (picture_count (&picture, style.teal, 0.25), >, 100);    /* lines of halves */
+  g_autofree char *words = chart->dup_description (charts);
+  g_assert_nonnull (strstr (words, "9 passages"));
+}
+
 /* -- files ----------------------------------------------------------------------------------- */
 
 static gsize
@@ -267,7 +307,7 @@ figures_are_files_with_their_fonts (void)
       g_autoptr (GPtrArray) files
           = tf_laws_charts_write (charts, folder, forms[k].ending, "Of 300 …", &error);
       g_assert_no_error (error);
-      g_assert_cmpuint (files->len, ==, 4);
+      g_assert_cmpuint (files->len, ==, 5); /* none is known to be born on the disk */
       for (guint f = 0; f < files->len; f++)
         {
           g_autofree char *text = NULL;
@@ -306,5 +346,6 @@ add_laws_chart_tests (void)
   g_test_add_func ("/chart/laws/nothing-to-show-is-said", nothing_to_show_is_said);
   g_test_add_func ("/chart/laws/many-regions-are-drawn-in-no-time",
                    many_regions_are_drawn_in_no_time);
+  g_test_add_func ("/chart/laws/emergence-is-drawn-by-age", emergence_is_drawn_by_age);
   g_test_add_func ("/chart/figures-are-files-with-their-fonts", figures_are_files_with_their_fonts);
 }
