@@ -14,7 +14,7 @@
 #include "tf-overlay.h"
 #include "tf-picture.h"
 #include "tf-sheet.h"
-#include "tf-sheets-private.h"
+#include "tf-sheet-words.h"
 
 #define PICTURE_PIXELS 900
 #define RANGE_GAUSS    500.0

@@ -11,7 +11,7 @@
 #include "tf-export-private.h"
 #include "tf-json.h"
 #include "tf-sheet.h"
-#include "tf-sheets-private.h"
+#include "tf-sheet-words.h"
 
 /* -- words -------------------------------------------------------------------------------------- */
 
@@ -64,6 +64,22 @@ tf_sheet_dup_name (const TfShiftRow *row)
   if (*row->external == '\0')
     return g_strconcat (own, label, NULL);
   return g_strdup_printf ("%s%s\n%s", own, label, row->external);
+}
+
+/* What others say of it, or of what may be it. */
+static char *
+dup_others_or_proposed (const TfShiftRow *row)
+{
+  if (row->others != NULL)
+    return tf_sheet_dup_others (row->others);
+  GString *text = g_string_new (NULL);
+  for (guint k = 0; k < row->proposed->len; k++)
+    {
+      const TfOthers *others = g_ptr_array_index (row->proposed, k);
+      g_autofree char *said = tf_sheet_dup_others (others);
+      g_string_append_printf (text, _ ("%s%s? (%.1f° apart)"), k > 0 ? "\n" : "", said, others->apart_deg);
+    }
+  return g_string_free (text, FALSE);
 }
 
 char *
@@ -180,7 +196,7 @@ add_row (GArray *lines, GPtrArray *texts, const TfShiftRow *row, guint order, Tf
     [TANGLE] = due ? g_strdup ("") : tf_sheet_dup_r (row, now),
     [FLUX] = dup_flux (row),
     [AREA] = dup_area (row),
-    [OTHERS] = tf_sheet_dup_others (row->others),
+    [OTHERS] = dup_others_or_proposed (row),
     [SEEN] = dup_seen (row, now),
   };
   TfSheetLine line = { NULL };
@@ -218,6 +234,11 @@ make_notes (const TfShift *shift)
       const TfShiftRow *row = g_ptr_array_index (shift->rows, k);
       for (guint n = 0; n < row->notes->len; n++)
         g_ptr_array_add (notes, tf_sheet_dup_note (g_ptr_array_index (row->notes, n), shift->since));
+    }
+  for (guint n = 0; n < shift->unmatched->len; n++)
+    {
+      g_autofree char *said = tf_sheet_dup_others (g_ptr_array_index (shift->unmatched, n));
+      g_ptr_array_add (notes, g_strdup_printf (_ ("listed by others, nothing of ours within 5°: %s"), said));
     }
   for (guint n = 0; n < shift->loose->len; n++)
     g_ptr_array_add (notes, tf_sheet_dup_note (g_ptr_array_index (shift->loose, n), shift->since));

@@ -136,6 +136,48 @@ tf_ledger_classes (TfLedger *ledger, GError **error)
   return more == 0 ? g_steal_pointer (&classes) : NULL;
 }
 
+void
+tf_listing_free (TfListing *listing)
+{
+  if (listing == NULL)
+    return;
+  g_free (listing->number);
+  g_free (listing->mw_class);
+  g_free (listing->source);
+  g_free (listing);
+}
+
+#define LISTINGS_SQL                                                                               \
+  "SELECT o.region, coalesce (json_extract (o.flat, '$.class'), ''), t.source, o.time, o.lat_deg, " \
+  "o.cmd_deg, o.carrington_lon_deg, json_extract (o.flat, '$.spot_area_msh'), "                    \
+  "coalesce (json_extract (o.flat, '$.listed') = 'due', 0) FROM outside t JOIN outside_row o ON "  \
+  "o.outside = t.id WHERE t.format = 'daily-region-summary' AND o.time BETWEEN ?1 AND ?2 "         \
+  "ORDER BY o.time, o.id"
+
+GPtrArray *
+tf_ledger_listings (TfLedger *ledger, TfTime from, TfTime until, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, NULL);
+  g_autoptr (GPtrArray) listings = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_listing_free);
+  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, LISTINGS_SQL, "dd", from.s, until.s);
+  int more = -1;
+  while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
+    {
+      TfListing *listing = g_new0 (TfListing, 1);
+      listing->number = g_strdup (tf_column_text (query, 0));
+      listing->mw_class = g_strdup (tf_column_text (query, 1));
+      listing->source = g_strdup (tf_column_text (query, 2));
+      listing->time.s = tf_column_double (query, 3);
+      listing->lat_deg = tf_column_double (query, 4);
+      listing->cmd_deg = tf_column_double (query, 5);
+      listing->carrington_lon_deg = tf_column_double (query, 6);
+      listing->spot_area_msh = tf_column_double (query, 7);
+      listing->due = sqlite3_column_int (query, 8);
+      g_ptr_array_add (listings, listing);
+    }
+  return more == 0 ? g_steal_pointer (&listings) : NULL;
+}
+
 static char *
 uid_of (TfLedger *ledger, const char *sql, gint64 key, const char *what, GError **error)
 {

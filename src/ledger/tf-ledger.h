@@ -246,6 +246,17 @@ typedef struct
 void tf_region_class_free (TfRegionClass *entry);
 /** tf_ledger_classes: (element-type TfRegionClass): all that stand, oldest frame first; of one frame the last word last. */
 GPtrArray *tf_ledger_classes (TfLedger *ledger, GError **error);
+/** TfListing: a region as a daily list of others has it (tf-daily-summary.h). */
+typedef struct
+{
+  char *number, *mw_class, *source; /* "" where not told */
+  TfTime time;
+  double lat_deg, cmd_deg, carrington_lon_deg, spot_area_msh; /* NaN: not told */
+  gboolean due; /* it is expected back, not seen */
+} TfListing;
+void tf_listing_free (TfListing *listing);
+/** tf_ledger_listings: (element-type TfListing): of daily lists that hold for a time from @from to @until. */
+GPtrArray *tf_ledger_listings (TfLedger *ledger, TfTime from, TfTime until, GError **error);
 /** tf_ledger_hand_over: a shift ends at @time (its frame's or the clock's); cannot be undone, a later one takes its place. */
 gboolean tf_ledger_hand_over (TfLedger *ledger, gint64 person, TfTime time, GError **error);
 /** tf_ledger_last_shift: when the last hand-over was recorded, by this machine's clock; unknown without one. @person: (out) (nullable)

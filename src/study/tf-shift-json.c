@@ -59,9 +59,8 @@ add_notes (JsonBuilder *builder, const char *key, const GPtrArray *notes, TfTime
 }
 
 static void
-add_others (JsonBuilder *builder, const TfOthers *others)
+build_others (JsonBuilder *builder, const TfOthers *others)
 {
-  json_builder_set_member_name (builder, "others");
   if (others == NULL)
     {
       json_builder_add_null_value (builder);
@@ -73,7 +72,19 @@ add_others (JsonBuilder *builder, const TfOthers *others)
   tf_json_number (builder, "spot_area_msh", others->area_msh);
   add_time (builder, "time", others->time);
   tf_json_string (builder, "source", or_null (others->source));
+  tf_json_number (builder, "apart_deg", others->apart_deg);
+  tf_json_int (builder, "sharing", others->sharing);
   json_builder_end_object (builder);
+}
+
+static void
+add_list (JsonBuilder *builder, const char *key, const GPtrArray *others)
+{
+  json_builder_set_member_name (builder, key);
+  json_builder_begin_array (builder);
+  for (guint k = 0; k < others->len; k++)
+    build_others (builder, g_ptr_array_index (others, k));
+  json_builder_end_array (builder);
 }
 
 static void
@@ -104,7 +115,9 @@ add_row (JsonBuilder *builder, const TfShiftRow *row, guint order, TfTime since)
   tf_json_number (builder, "flux_sigma_mx", row->flux_sigma_mx);
   add_value (builder, "magnetic_area_msh", &row->area_msh);
   tf_json_bool (builder, "floors_differ", row->floors_differ);
-  add_others (builder, row->others);
+  json_builder_set_member_name (builder, "others");
+  build_others (builder, row->others);
+  add_list (builder, "proposed", row->proposed);
   add_notes (builder, "notes", row->notes, since);
   json_builder_end_object (builder);
 }
@@ -127,6 +140,7 @@ tf_shift_build_json (const TfShift *shift, const char *who, JsonBuilder *builder
     add_row (builder, g_ptr_array_index (shift->rows, k), k + 1, shift->since);
   json_builder_end_array (builder);
   add_notes (builder, "notes_elsewhere", shift->loose, shift->since);
+  add_list (builder, "unmatched", shift->unmatched);
   json_builder_set_member_name (builder, "cautions");
   tf_notes_build_json (shift->cautions, builder);
   json_builder_end_object (builder);

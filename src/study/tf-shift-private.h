@@ -35,6 +35,8 @@ void tf_shift_row_free (TfShiftRow *row);
 void tf_others_free (TfOthers *others);
 /* The class that stood at @time: the last person's word on the newest frame until then; NULL. */
 const TfRegionClass *tf_shift_class_at (const TfShiftSky *sky, gint64 region, TfTime time);
+/* From the newest list that holds for about the frame's day. */
+gboolean tf_shift_add_others (const TfShiftSky *sky, TfLedger *ledger, TfShift *shift, GError **error);
 /* Rows of last rotation's regions that cross the east limb from a day before to three days after. */
 void tf_shift_add_due (const TfShiftSky *sky, GPtrArray *rows);
 

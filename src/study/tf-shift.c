@@ -30,22 +30,12 @@ tf_shift_row_new (void)
   row->lat_deg = row->carrington_lon_deg = row->cmd_deg = row->mu = row->flux_sigma_mx = NAN;
   row->first = row->crosses = row->class_time = TF_TIME_UNKNOWN;
   row->notes = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_region_note_free);
+  row->proposed = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_others_free);
   char **texts[] = { &row->number,    &row->label,        &row->external,
                      &row->class_now, &row->class_before, &row->class_person };
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     *texts[k] = g_strdup ("");
   return row;
-}
-
-void
-tf_others_free (TfOthers *others)
-{
-  if (others == NULL)
-    return;
-  g_free (others->number);
-  g_free (others->mw_class);
-  g_free (others->source);
-  g_free (others);
 }
 
 void
@@ -56,6 +46,7 @@ tf_shift_row_free (TfShiftRow *row)
   for (guint k = 0; k < G_N_ELEMENTS (texts); k++)
     g_free (texts[k]);
   g_ptr_array_unref (row->notes);
+  g_ptr_array_unref (row->proposed);
   tf_others_free (row->others);
   g_free (row);
 }
@@ -258,6 +249,7 @@ row_of (const Track *track)
       row->region = track->named->region_key;
       set_text (&row->number, track->named->region);
       set_text (&row->label, track->named->label);
+      set_text (&row->external, track->named->external);
     }
   set_place (row, track);
   set_sizes (row, track);
@@ -352,6 +344,7 @@ tf_shift_free (TfShift *shift)
   g_free (shift->since_person);
   g_clear_pointer (&shift->rows, g_ptr_array_unref);
   g_clear_pointer (&shift->loose, g_ptr_array_unref);
+  g_clear_pointer (&shift->unmatched, g_ptr_array_unref);
   g_clear_pointer (&shift->cautions, g_ptr_array_unref);
   g_free (shift);
 }
@@ -365,6 +358,7 @@ shift_new (const TfShiftSky *sky)
   shift->compared = compared (sky);
   shift->rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_shift_row_free);
   shift->loose = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_region_note_free);
+  shift->unmatched = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_others_free);
   shift->cautions = tf_notes_new ();
   tf_notes_add (shift->cautions, "complexity-describes", "");
   tf_notes_add (shift->cautions, "decisions-elsewhere", "");
@@ -397,7 +391,7 @@ tf_shift_read (TfLedger *ledger, gint64 frame, GError **error)
   tf_shift_add_due (&sky, shift->rows);
   g_ptr_array_sort (shift->rows, tf_shift_compare);
   count (shift);
-  if (!take_notes (shift, ledger, error))
+  if (!tf_shift_add_others (&sky, ledger, shift, error) || !take_notes (shift, ledger, error))
     return NULL;
   return g_steal_pointer (&shift);
 }

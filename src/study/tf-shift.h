@@ -53,8 +53,10 @@ typedef struct
 typedef struct
 {
   char *number, *mw_class, *source; /* "" where not told */
-  double area_msh;                  /* of its spots */
+  double area_msh;                  /* of its spots, in white light */
   TfTime time;                      /* for which it holds */
+  double apart_deg;                 /* proposed: from our region's carried place */
+  guint sharing;                    /* proposed: how many of their regions are nearest to this one of ours; 1 as a rule */
 } TfOthers;
 
 typedef struct
@@ -78,7 +80,8 @@ typedef struct
   double flux_sigma_mx;
   gboolean floors_differ; /* flux and area of the two days cannot be compared: before is NaN */
   GPtrArray *notes;       /* (element-type TfRegionNote), newest first */
-  TfOthers *others;       /* NULL */
+  TfOthers *others;       /* of the number a person gave it; NULL */
+  GPtrArray *proposed;    /* (element-type TfOthers): listed within 5 deg of it; nobody has said that they are it */
 } TfShiftRow;
 
 typedef struct
@@ -92,6 +95,7 @@ typedef struct
   GPtrArray *rows; /* (element-type TfShiftRow), in order */
   guint count[TF_SHIFT_N_GROUPS], n_new;
   GPtrArray *loose; /* (element-type TfRegionNote): open notes on regions not listed: they carry over, too */
+  GPtrArray *unmatched; /* (element-type TfOthers): listed by others, and nothing of ours is near */
   TfNotes *cautions;
 } TfShift;
 
@@ -121,6 +125,11 @@ typedef enum
   TF_NOTE_STATE_SETTLED,
 } TfNoteState;
 TfNoteState tf_shift_note_state (const TfRegionNote *note, TfTime since);
+
+/* -- what others list (tf-shift-others.c): pure ------------------------------------------------- */
+/** tf_shift_match: each of @listings (element-type TfListing) to the row it has the number of, else as a proposal to the nearest row
+ * within 5 deg, carried from @now to the moment it holds for, else to @unmatched. */
+void tf_shift_match (GPtrArray *rows, TfTime now, const GPtrArray *listings, guint law, GPtrArray *unmatched);
 
 /* -- the east limb (tf-shift-due.c) ------------------------------------------------------------ */
 /** tf_shift_limb_cmd: CMD (0 to 180 deg) at which a latitude crosses the limb of an observer at @b0_deg; 90 where it never does. */

@@ -5,3 +5,4 @@
 
 /** add_sheet_tests: @demo_folder: data-demo/frames. */
 void add_sheet_tests (const char *demo_folder);
+void add_daily_summary_tests (void);

@@ -282,6 +282,51 @@ last_rotation_comes_back (void)
   tf_check_angle ("limb", lon - earth.carrington_lon_deg, -tf_shift_limb_cmd (10, earth.b0_deg), 0.05);
 }
 
+static TfListing *
+listing (const char *number, TfTime time, double lat, double carrington, double cmd)
+{
+  TfListing *l = g_new0 (TfListing, 1);
+  *l = (TfListing){ .number = g_strdup (number), .mw_class = g_strdup ("β"), .source = g_strdup ("a list"), .time = time,
+                    .lat_deg = lat, .carrington_lon_deg = carrington, .cmd_deg = cmd, .spot_area_msh = 100 };
+  return l;
+}
+
+static TfShiftRow *
+placed (GPtrArray *rows, const char *external, double lat, double lon)
+{
+  TfShiftRow *row = g_new0 (TfShiftRow, 1);
+  *row = (TfShiftRow){ .seen = TF_SEEN_MARK, .external = (char *)external, .lat_deg = lat, .carrington_lon_deg = lon };
+  row->proposed = g_ptr_array_new ();
+  g_ptr_array_add (rows, row);
+  return row;
+}
+
+static void
+matches_are_proposed_by_place (void)
+{
+  TfTime now = tf_time_read ("2013-06-05T06:00:00Z"), then = tf_time_read ("2013-06-06T00:00:00Z");
+  g_autoptr (GPtrArray) rows = g_ptr_array_new (), unmatched = g_ptr_array_new (),
+                        listings = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_listing_free);
+  TfShiftRow *a = placed (rows, "", 15, 100), *b = placed (rows, "", 15, 108), *c = placed (rows, "11777", -20, 200);
+  double l0 = tf_earth_l0 (then, TF_L0_IMAGE);
+  g_ptr_array_add (listings, listing ("11771", then, 15, 103.5, NAN));           /* nearer to the first */
+  g_ptr_array_add (listings, listing ("11772", then, 14, NAN, 99 - l0));         /* by its longitude from the meridian */
+  g_ptr_array_add (listings, listing ("11777", then, -24, 230, NAN));            /* the number decides, wherever it stands */
+  g_ptr_array_add (listings, listing ("11778", then, -20, 207, NAN));            /* nothing within 5 degrees */
+  g_ptr_array_add (listings, listing ("11779", then, 15, 108, NAN));
+  ((TfListing *)g_ptr_array_index (listings, 4))->due = TRUE; /* not seen yet */
+  tf_shift_match (rows, now, listings, 0, unmatched);
+  g_assert_cmpuint (a->proposed->len, ==, 2); /* many to one is shown */
+  g_assert_cmpuint (((TfOthers *)g_ptr_array_index (a->proposed, 0))->sharing, ==, 2);
+  g_assert_cmpuint (b->proposed->len, ==, 0);
+  g_assert_nonnull (c->others);
+  g_assert_cmpuint (unmatched->len, ==, 1);
+  g_assert_cmpstr (((TfOthers *)g_ptr_array_index (unmatched, 0))->number, ==, "11778");
+  /* carried: at 60 deg the field lags by 2.6 deg a day, at 15 deg by 0.1 */
+  tf_check_near ("distance", ((TfOthers *)g_ptr_array_index (a->proposed, 0))->apart_deg,
+                 cos (15 * G_PI / 180) * (3.5 - tf_rotation_carry (0, 15, 64800)), 0.02);
+}
+
 static void
 notes_carry_over (void)
 {
@@ -326,5 +371,6 @@ test_study_add_shift (void)
   g_test_add_func ("/study/shift/new-is-what-no-carried-outline-explains", new_is_what_nothing_explains);
   g_test_add_func ("/study/shift/fluxes-above-different-floors-are-not-compared", floors_must_agree);
   g_test_add_func ("/study/shift/last-rotation's-regions-are-due-back", last_rotation_comes_back);
+  g_test_add_func ("/study/shift/matches-are-proposed-by-the-carried-place", matches_are_proposed_by_place);
   g_test_add_func ("/study/shift/open-notes-carry-over-and-settled-ones-go", notes_carry_over);
 }

@@ -3,7 +3,7 @@
  */
 #pragma once
 
-/* Words that both sheets use, in the current language. */
+/* Words that the sheets and the list in the window use, in the current language; (transfer full). */
 
 #include "tf-sheets.h"
 
