@@ -5,6 +5,9 @@
 
 #include <glib/gi18n-lib.h>
 
+#include "tf-daily-summary.h"
+#include "tf-intake.h"
+
 TfDeed *
 tf_deed_new (TfDeedKind kind, const char *person)
 {
@@ -38,6 +41,7 @@ tf_deed_copy (const TfDeed *deed)
   copy->hint = deed->hint;
   copy->follows = deed->follows;
   copy->region = deed->region;
+  copy->author = deed->author;
   copy->origin = deed->origin;
   copy->outline = deed->outline != NULL ? tf_outline_ref (deed->outline) : NULL;
   if (deed->kind == TF_DEED_KEEP)
@@ -98,6 +102,35 @@ run_geometry (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
   return tf_ledger_set_geometry (ledger, deed->frame, person, &correction, error);
 }
 
+/* What is no summary can never be one: it is said and taken off. */
+static gboolean
+run_bring (const TfDeed *deed, TfLedger *ledger, GError **error)
+{
+  g_autofree char *bytes = NULL, *name = g_path_get_basename (deed->text);
+  gsize n;
+  g_autoptr (GError) reason = NULL;
+  g_autoptr (TfDailySummary) summary = NULL;
+  if (g_file_get_contents (deed->text, &bytes, &n, &reason))
+    summary = tf_daily_summary_read (bytes, n, name, &reason);
+  if (summary == NULL)
+    {
+      g_set_error_literal (error, TF_LEDGER_ERROR, TF_LEDGER_ERROR_STATE, reason->message);
+      return FALSE;
+    }
+  g_autofree char *checksum
+      = g_compute_checksum_for_data (G_CHECKSUM_SHA256, (const guchar *)bytes, n);
+  return tf_daily_summary_bring (summary, ledger, name, checksum, NULL, error) != 0;
+}
+
+static gboolean
+run_tangle (const TfDeed *deed, TfLedger *ledger, GError **error)
+{
+  const TfRowQuery query = { .marks = TRUE, .frame = deed->frame };
+  TfComplexityParams params;
+  tf_complexity_params_init (&params);
+  return tf_intake_complexity (ledger, &query, &params, NULL, NULL, error);
+}
+
 static gboolean
 run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 {
@@ -130,6 +163,14 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
       return run_geometry (deed, ledger, person, error);
     case TF_DEED_DIVIDE:
       return tf_ledger_set_divide (ledger, deed->study, deed->divide, person, error);
+    case TF_DEED_SETTLE:
+      return tf_ledger_resolve (ledger, deed->region, deed->author, person, TRUE, error);
+    case TF_DEED_HAND_OVER:
+      return tf_ledger_hand_over (ledger, person, TF_TIME_UNKNOWN, error);
+    case TF_DEED_BRING:
+      return run_bring (deed, ledger, error);
+    case TF_DEED_TANGLE:
+      return run_tangle (deed, ledger, error);
     default:
       g_return_val_if_reached (FALSE);
     }
@@ -179,6 +220,10 @@ tf_deed_name (const TfDeed *deed)
     N_ ("several deeds as one"),
     N_ ("the geometry of the frame"),
     N_ ("moving the divide"),
+    N_ ("settling the note"),
+    N_ ("handing over"),
+    N_ ("bringing in the summary"),
+    N_ ("the complexity of the mark"),
   };
   return _ (names[deed->kind]);
 }

@@ -27,13 +27,17 @@ typedef enum
   TF_DEED_TOGETHER, /* parts, as: several as one, recorded and undone together */
   TF_DEED_GEOMETRY, /* frame, text: a TfCorrection; "" takes it back to the header */
   TF_DEED_DIVIDE, /* study, divide */
+  TF_DEED_SETTLE,   /* region, author: that person's note on it is settled */
+  TF_DEED_HAND_OVER,
+  TF_DEED_BRING,    /* text: path of a daily region summary */
+  TF_DEED_TANGLE,   /* frame: complexity of the marks on it that have none */
 } TfDeedKind;
 
 typedef struct
 {
   TfDeedKind kind;
   char *person;
-  gint64 frame, hint, follows, region;
+  gint64 frame, hint, follows, region, author;
   TfMarkOrigin origin;
   TfOutline *outline;
   TfMeasure measure;

@@ -195,6 +195,7 @@ take_reading (TfSession *self, Reading *r)
                              g_steal_pointer (&r->mark_dots));
   tf_session_judge_divide (self);
   tf_session_forget_laws (self);
+  tf_session_update_shift (self);
   tf_session_emit (self, TF_SIGNAL_STATUS);
 }
 
@@ -323,6 +324,7 @@ tf_session_open_ledger (TfSession *self, const char *path, char letter)
   self->reader = tf_lane_new (self->path, letter);
   self->writer = tf_writer_new (self->path, 0); /* opens the file with its first deed */
   tf_session_connect_writer (self);
+  tf_session_connect_shift (self);
   self->refresh_all = TRUE;
   start_reading (self);
   self->watch = g_timeout_add_seconds (WATCH_SECONDS, watch, self);

@@ -26,6 +26,7 @@ typedef enum
   TF_SIGNAL_CHOICE,
   TF_SIGNAL_POINTS,
   TF_SIGNAL_STATUS,
+  TF_SIGNAL_SHIFT,
   TF_SIGNAL_PERSON_NEEDED,
   TF_SIGNAL_LAWS,
 } TfSessionSignal;
@@ -115,6 +116,10 @@ struct _TfSession
   TfSampleRow sample;
   TfVerdict verdict;
 
+  gboolean list_shown;
+  TfShift *shift;    /* as last read; NULL */
+  guint shift_asked; /* readings on their way */
+
   GArray *points;    /* TfPoint */
   GArray *all_dots;  /* TfWingsDot, one a point */
   GArray *mark_dots; /* TfWingsDot, of marks alone */
@@ -150,6 +155,12 @@ void tf_session_restore_draft (TfSession *session, const char *text);
 /** tf_session_forget_hoped: what was on its way into the ledger is there, or will not come. */
 void tf_session_forget_hoped (TfSession *self);
 void tf_session_connect_writer (TfSession *session);
+/** tf_session_update_shift: reads the list again when it is in sight. */
+void tf_session_update_shift (TfSession *session);
+/** tf_session_take_shift: (transfer full) (nullable) */
+void tf_session_take_shift (TfSession *session, TfShift *shift);
+/** tf_session_connect_shift: figures of what is kept follow it. */
+void tf_session_connect_shift (TfSession *session);
 /** tf_session_reopen_frame: under the correction that is in force now. */
 void tf_session_reopen_frame (TfSession *session);
 /** tf_session_check_geometry: when the ledger says another correction than the one shown. */

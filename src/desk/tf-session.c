@@ -14,6 +14,7 @@ static const char *const signal_names[] = {
   [TF_SIGNAL_FRAME] = "frame-changed",         [TF_SIGNAL_VIEW] = "view-changed",
   [TF_SIGNAL_OVERLAYS] = "overlays-changed",
   [TF_SIGNAL_REGIONS] = "regions-changed",     [TF_SIGNAL_CHOICE] = "choice-changed",
+  [TF_SIGNAL_SHIFT] = "shift-changed",
   [TF_SIGNAL_POINTS] = "points-changed",       [TF_SIGNAL_STATUS] = "status-changed",
   [TF_SIGNAL_PERSON_NEEDED] = "person-needed", [TF_SIGNAL_LAWS] = "laws-changed",
 };
@@ -74,6 +75,7 @@ finalize (GObject *object)
   g_free (self->progress);
   g_free (self->feed_trouble);
   g_free (self->draft_text);
+  g_clear_pointer (&self->shift, tf_shift_free);
   tf_judge_unref (self->judge);
   tf_workers_unref (self->workers);
   tf_pool_unref (self->pool);

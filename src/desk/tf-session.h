@@ -15,6 +15,7 @@
  * "regions-changed"  hints and marks on the plate
  * "choice-changed"   the chosen region, the draft, the tool, the measure of either
  * "points-changed"   the dots of the wings and the stretch picked on them
+ * "shift-changed"    the forecaster's list, and whether it is in sight
  * "status-changed"   busy, problem, pending deeds, undo and redo
  * "message" (text)   something to be said once
  * "person-needed"    a deed waits for the name of who does it */
@@ -26,6 +27,7 @@
 #include "tf-judge.h"
 #include "tf-picture.h"
 #include "tf-region-item.h"
+#include "tf-shift.h"
 
 G_BEGIN_DECLS
 
@@ -230,6 +232,34 @@ const char *tf_session_get_saved (TfSession *session);
 const char *tf_session_get_problem (TfSession *session);
 void tf_session_retry (TfSession *session);
 void tf_session_give_up (TfSession *session);
+
+/* -- the forecaster's list (tf-session-shift.c) */
+/** tf_session_set_list_shown: it is read only while it is in sight. */
+void tf_session_set_list_shown (TfSession *session, gboolean shown);
+gboolean tf_session_get_list_shown (TfSession *session);
+/** tf_session_get_shift: (nullable): of the frame on the plate; borrowed until "shift-changed" */
+const TfShift *tf_session_get_shift (TfSession *session);
+/** tf_session_get_shift_row: (nullable): the row of the chosen region */
+const TfShiftRow *tf_session_get_shift_row (TfSession *session);
+/** tf_session_choose_mark: FALSE when it is not on the plate */
+gboolean tf_session_choose_mark (TfSession *session, gint64 mark, gboolean is_hint);
+/** tf_session_step_listed: to the next (1) or previous (-1) region of the list that is on the frame. */
+gboolean tf_session_step_listed (TfSession *session, int step);
+gboolean tf_session_choose_newest (TfSession *session);
+/** tf_session_settle: the newest open note of the chosen region is settled. */
+gboolean tf_session_can_settle (TfSession *session);
+gboolean tf_session_settle (TfSession *session);
+/** tf_session_hand_over: the shift ends: notes written from now on are new to the next desk. */
+gboolean tf_session_hand_over (TfSession *session);
+/** tf_session_confirm: the chosen region gets the number that others give to what lies there. */
+gboolean tf_session_can_confirm (TfSession *session);
+gboolean tf_session_confirm (TfSession *session);
+/** tf_session_bring: a daily region summary goes into the ledger. */
+gboolean tf_session_bring (TfSession *session, const char *path);
+/** tf_session_write_shift: the shift sheet of the frame on the plate; "message" says when it is there. */
+gboolean tf_session_write_shift (TfSession *session, const char *path);
+gboolean tf_session_can_write_region (TfSession *session);
+gboolean tf_session_write_region (TfSession *session, const char *path);
 
 /* -- the wings (tf-session-wings.c) */
 /** tf_session_get_dots: (element-type TfWingsDot): those shown; @n_hidden: (out): hints not shown

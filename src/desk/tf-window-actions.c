@@ -231,6 +231,7 @@ tf_window_add_actions (TfWindow *self)
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
   tf_window_add_plate_actions (self);
   tf_window_add_frame_actions (self);
+  tf_window_add_list_actions (self);
 }
 
 static void
@@ -312,4 +313,5 @@ tf_window_update_actions (TfWindow *self)
   update_states (self, session);
   tf_window_update_plate_actions (self);
   tf_window_update_frame_actions (self);
+  tf_window_update_list_actions (self);
 }

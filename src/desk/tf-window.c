@@ -9,6 +9,7 @@
 
 #include "tf-actions-laws.h"
 #include "tf-laws-bench.h"
+#include "tf-list.h"
 #include "tf-plate-pane.h"
 #include "tf-preferences.h"
 #include "tf-roll.h"
@@ -30,6 +31,8 @@ struct _TfWindow
   GtkWidget *wings_offer, *make_here;
   AdwClamp *roll_clamp, *slip_clamp;
   TfRoll *roll;
+  TfList *list;
+  GtkStack *left_stack;
   TfPlatePane *plate_pane;
   TfSlip *slip;
   TfWingsView *wings;
@@ -294,7 +297,26 @@ connect_session (TfWindow *self)
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "laws-changed", G_CALLBACK (tf_window_update_laws_actions), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "shift-changed", G_CALLBACK (tf_window_update_actions), self,
+                           G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "message", G_CALLBACK (message), self, 0);
+}
+
+/* -- what stands at the left ------------------------------------------------------------------- */
+
+void
+tf_window_show_list (TfWindow *self, gboolean list)
+{
+  gtk_stack_set_visible_child_name (self->left_stack, list ? "regions" : "frames");
+}
+
+static void
+left_changed (TfWindow *self)
+{
+  gboolean list = g_strcmp0 (gtk_stack_get_visible_child_name (self->left_stack), "regions") == 0;
+  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), "list");
+  g_simple_action_set_state (G_SIMPLE_ACTION (action), g_variant_new_boolean (list));
+  tf_session_set_list_shown (self->session, list);
 }
 
 /* The panels have a width of their own, which grows with the user's text but slower, so that the
@@ -418,6 +440,8 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfWindow, roll_clamp);
   gtk_widget_class_bind_template_child (widget, TfWindow, slip_clamp);
   gtk_widget_class_bind_template_child (widget, TfWindow, roll);
+  gtk_widget_class_bind_template_child (widget, TfWindow, list);
+  gtk_widget_class_bind_template_child (widget, TfWindow, left_stack);
   gtk_widget_class_bind_template_child (widget, TfWindow, plate_pane);
   gtk_widget_class_bind_template_child (widget, TfWindow, slip);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings);
@@ -430,6 +454,7 @@ tf_window_class_init (TfWindowClass *klass)
   G_OBJECT_CLASS (klass)->dispose = dispose;
   GTK_WINDOW_CLASS (klass)->close_request = close_request;
   g_type_ensure (TF_TYPE_ROLL);
+  g_type_ensure (TF_TYPE_LIST);
   g_type_ensure (TF_TYPE_PLATE_PANE);
   g_type_ensure (TF_TYPE_SLIP);
   g_type_ensure (TF_TYPE_WINGS_VIEW);
@@ -475,6 +500,9 @@ tf_window_init (TfWindow *self)
   tf_window_add_drop (self);
   restore_preferences (self);
   tf_roll_set_session (self->roll, self->session);
+  tf_list_set_session (self->list, self->session);
+  g_signal_connect_object (self->left_stack, "notify::visible-child", G_CALLBACK (left_changed), self,
+                           G_CONNECT_SWAPPED);
   tf_plate_pane_set_session (self->plate_pane, self->session);
   tf_slip_set_session (self->slip, self->session);
   g_signal_connect_object (self->session, "choice-changed", G_CALLBACK (rescue_focus), self,

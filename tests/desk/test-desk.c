@@ -119,6 +119,7 @@ main (int argc, char **argv)
   test_desk_add_session ();
   test_desk_add_plate ();
   test_desk_add_geometry ();
+  test_desk_add_list ();
   test_desk_add_window ();
   test_desk_add_laws ();
   int result = g_test_run ();

@@ -19,6 +19,7 @@ gboolean test_desk_has_display (void);
 
 void test_desk_add_words (void);
 void test_desk_add_geometry (void);
+void test_desk_add_list (void);
 void test_desk_add_plate (void);
 void test_desk_add_session (void);
 void test_desk_add_window (void);
