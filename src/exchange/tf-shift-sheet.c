@@ -31,7 +31,7 @@ tf_sheet_dup_change (const TfShiftValue *value)
   double share = tf_shift_share (value);
   if (!isfinite (share))
     return g_strdup ("");
-  return g_strdup_printf ("%s%.0f %%", share < -0.005 ? "−" : share < 0.005 ? "±" : "+", 100.0 * fabs (share));
+  return g_strdup_printf ("%s%.0f %%", share < -0.005 ? "−" : share < 0.005 ? "±" : "+", 100.0 * fabs (share));
 }
 
 char *
@@ -130,7 +130,7 @@ enum
   SEEN
 };
 
-static const double widths[TF_SHEET_COLUMNS] = { 3, 13, 9, 14, 15, 15, 13, 14, 13 };
+static const double widths[TF_SHEET_COLUMNS] = { 3, 12, 9, 13, 14, 21, 15, 15, 15 };
 
 static char *
 dup_place (const TfShiftRow *row)
@@ -148,7 +148,7 @@ dup_flux (const TfShiftRow *row)
   g_autofree char *flux = tf_chart_dup_flux (row->flux_mx.now);
   g_autofree char *change = tf_sheet_dup_change (&row->flux_mx);
   g_autofree char *sigma = isfinite (row->flux_sigma_mx)
-                               ? g_strdup_printf (" ± %.0f %%", 100.0 * row->flux_sigma_mx / row->flux_mx.now)
+                               ? g_strdup_printf (" ± %.0f %%", 100.0 * row->flux_sigma_mx / row->flux_mx.now)
                                : g_strdup ("");
   return g_strdup_printf ("%s%s; %s", flux, sigma, row->floors_differ ? _ ("other floor") : *change != '\0' ? change : "—");
 }
