@@ -51,6 +51,7 @@ enum
   ROLL_WIDTH = 166,
   SLIP_WIDTH = 304
 };
+#define USUAL_TEXT 13.5 /* pixels of a letter where nobody asked for another size */
 static const char sqlite_magic[] = "SQLite format 3";
 
 TfSession *
@@ -141,7 +142,10 @@ show_age (TfWindow *self)
   double age = age_of (newest);
   gboolean late = isfinite (cadence) && age > 2 * cadence;
   g_autofree char *words = tf_words_dup_age (age), *step = tf_words_dup_age (cadence);
-  g_autofree char *text = g_strdup_printf (late ? _ ("newest %s · late") : _ ("newest %s"), words);
+  /* With large text the head has no room for a sentence; the age and "late" are never cut. */
+  gboolean brief = tf_widget_text_size (GTK_WIDGET (self)) > 1.4 * USUAL_TEXT;
+  g_autofree char *aged = brief ? g_strdup (words) : g_strdup_printf (_ ("newest %s"), words);
+  g_autofree char *text = late ? g_strdup_printf (_ ("%s · late"), aged) : g_strdup (aged);
   g_autofree char *iso = tf_time_dup_iso (newest, 0);
   g_autofree char *tip
       = g_strdup_printf (_ ("Newest frame: %s. Usual step between frames: %s."), iso, step);
@@ -324,7 +328,7 @@ left_changed (TfWindow *self)
 static void
 set_widths (TfWindow *self)
 {
-  double share = fmin (fmax (tf_widget_text_size (GTK_WIDGET (self)) / 13.5, 0.9), 2.5);
+  double share = fmin (fmax (tf_widget_text_size (GTK_WIDGET (self)) / USUAL_TEXT, 0.9), 2.5);
   int roll = (int)(ROLL_WIDTH * (0.55 + 0.45 * share)),
       slip = (int)(SLIP_WIDTH * (0.6 + 0.4 * share));
   adw_clamp_set_maximum_size (self->roll_clamp, roll);
@@ -333,6 +337,7 @@ set_widths (TfWindow *self)
   adw_clamp_set_tightening_threshold (self->slip_clamp, slip);
   gtk_widget_set_size_request (GTK_WIDGET (self->roll), roll, -1);
   gtk_widget_set_size_request (GTK_WIDGET (self->slip), slip, -1);
+  show_age (self);
 }
 
 /* -- opening --------------------------------------------------------------------------------- */
