@@ -60,9 +60,13 @@ tf_shape_clear (TfShape *shape)
   g_clear_pointer (&shape->points, g_array_unref);
 }
 
+/* The points of the smaller are carried, so that enough of them tell, back in time where it is the
+ * later one. */
 double
 tf_shape_common (const TfShape *a, const TfShape *b, double seconds, guint law)
 {
+  if (b->area_deg2 < a->area_deg2)
+    return tf_shape_common (b, a, -seconds, law);
   double moved = tf_rotation_carry (law, a->lat_deg, seconds);
   double apart = tf_sphere_distance (a->lon_deg + moved, a->lat_deg, b->lon_deg, b->lat_deg);
   /* The rotation shears an outline a little: a tenth of its radius over three days. */
@@ -76,7 +80,7 @@ tf_shape_common (const TfShape *a, const TfShape *b, double seconds, guint law)
       tf_sphere_unit (p->lon_deg + tf_rotation_carry (law, p->lat_deg, seconds), p->lat_deg, unit);
       inside += tf_outline_contains_rings (b->outline, unit) != FALSE;
     }
-  return MIN (a->area_deg2 * inside / a->points->len, b->area_deg2);
+  return a->area_deg2 * inside / a->points->len;
 }
 
 double
