@@ -137,7 +137,6 @@ add_hints (MadeSky *sky, const TfSun *sun, const Place *places, guint n, double 
       s->outline = tf_outline_ref (hint->outline);
       g_ptr_array_add (sky->outlines, (gpointer)s->outline);
     }
-  g_ptr_array_foreach (hints, (GFunc)(GCallback)tf_hint_free, NULL);
 }
 
 static MadeSky *
