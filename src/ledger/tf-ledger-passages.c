@@ -10,18 +10,17 @@
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
-/* The marks of a passage, those of hints that follow saw before they were kept included. */
-#define MARKS_OF(passage)                                                                          \
+/* The marks of passages, those of hints that follow saw before they were kept included. By passage:
+ * "+" keeps the planner from going through all hints. */
+#define MARKS_OF(passages)                                                                         \
   "SELECT m.id, m.region, m.frame FROM member b JOIN mark m ON m.id = b.mark AND m.live = 1 "      \
-  "WHERE b.hint = 0 AND b.passage = " passage                                                      \
+  "WHERE +b.hint = 0 AND b.passage IN (" passages ")"                                              \
   " UNION SELECT m.id, m.region, m.frame FROM member b JOIN mark m ON m.hint = b.mark AND m.live " \
-  "= 1 WHERE b.hint = 1 AND b.passage = " passage
+  "= 1 WHERE +b.hint = 1 AND b.passage IN (" passages ")"
 /* First in time, then the region with the lower number. */
 #define REGION_OF(passages)                                                                        \
-  "SELECT region FROM (SELECT m.region AS region, f.time AS time FROM member b JOIN mark m ON "    \
-  "m.live = 1 AND (b.hint = 0 AND m.id = b.mark "                                                  \
-  "OR b.hint = 1 AND m.hint = b.mark) JOIN frame f ON f.id = m.frame WHERE b.passage IN "          \
-  "(" passages ")) ORDER BY time, region LIMIT 1"
+  "SELECT k.region FROM (" MARKS_OF (passages) ") k JOIN frame f ON f.id = k.frame "               \
+                                               "ORDER BY f.time, k.region LIMIT 1"
 #define REGION_SQL                                                                                 \
   "coalesce ((" REGION_OF ("q.id") "), (" REGION_OF (                                              \
       "SELECT w.id FROM passage w WHERE w.same = q.same") "), 0)"
@@ -34,15 +33,14 @@
   "= (CASE q.last_hint WHEN 1 THEN (SELECT frame FROM hint WHERE id = q.last_mark) ELSE (SELECT "  \
   "frame FROM mark WHERE id = q.last_mark) "                                                       \
   "END)), q.first_hint, q.first_mark, q.last_hint, q.last_mark, q.n_frames, q.born, q.ended, "     \
-  "q.split_from, q.merged_into, q.same, " REGION_SQL                                               \
-  ", (SELECT count (*) FROM (" MARKS_OF ("q.id") ")), (SELECT count (DISTINCT region) FROM "       \
-                                                 "(" MARKS_OF (                                    \
-                                                     "q.id") ")), "                                \
-                                                             "(SELECT count (*) FROM member b "    \
-                                                             "JOIN point p ON p.hint = 1 AND "     \
-                                                             "p.mark = b.mark WHERE b.hint = 1 "   \
-                                                             "AND b.passage = q.id) FROM passage " \
-                                                             "q "
+  "q.split_from, q.merged_into, q.same, " REGION_SQL ", (SELECT count (*) FROM (" MARKS_OF (       \
+      "q.id") ")), (SELECT count (DISTINCT region) FROM "                                          \
+              "(" MARKS_OF ("q.id") ")), "                                                         \
+                                    "(SELECT count (*) FROM member b "                             \
+                                    "JOIN point p ON p.hint = 1 AND "                              \
+                                    "p.mark = b.mark WHERE b.hint = 1 "                            \
+                                    "AND b.passage = q.id) FROM passage "                          \
+                                    "q "
 
 void
 tf_passage_row_free (TfPassageRow *row)
