@@ -73,8 +73,8 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "hale-witnesses-differ", TF_NOTE_REASON,
     N_ ("cannot say: the witnesses of the leading polarity differ") },
   { "hints-counted", TF_NOTE_CAUTION,
-    N_ ("{0} of the rows are hints that nobody has judged; {1} are people's marks. A hint is "
-        "counted as a region of its own.") },
+    N_ ("{0} of the rows are hints that nobody has judged; {1} are people's marks. A hint that "
+        "follow has not linked counts as a region of its own.") },
   { "instruments-unscaled-pooled", TF_NOTE_CAUTION,
     N_ ("Frames of several instruments are pooled without a scale between their fields: {0}. "
         "Fluxes and floors are not alike.") },
