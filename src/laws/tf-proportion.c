@@ -153,17 +153,53 @@ compare_numbers (gconstpointer a, gconstpointer b)
   return (left > right) - (left < right);
 }
 
+/* Puts the value that is at @wanted in order there, smaller ones before it (Hoare 1961). */
+static double
+select_value (double *values, guint n, guint wanted)
+{
+  gssize low = 0, high = (gssize)n - 1;
+  while (low < high)
+    {
+      double pivot = values[low + (high - low) / 2];
+      gssize i = low, j = high;
+      while (i <= j)
+        {
+          while (values[i] < pivot)
+            i++;
+          while (values[j] > pivot)
+            j--;
+          if (i > j)
+            break;
+          double swap = values[i];
+          values[i++] = values[j];
+          values[j--] = swap;
+        }
+      if ((gssize)wanted <= j)
+        high = j;
+      else if ((gssize)wanted >= i)
+        low = i;
+      else
+        break;
+    }
+  return values[wanted];
+}
+
 double
 tf_median (const double *values, guint n)
 {
   if (n == 0)
     return NAN;
-  g_autofree double *sorted = g_memdup2 (values, n * sizeof *values);
+  g_autofree double *some = g_memdup2 (values, n * sizeof *values);
   for (guint k = 0; k < n; k++)
-    if (isnan (sorted[k]))
+    if (isnan (some[k]))
       return NAN;
-  qsort (sorted, n, sizeof *sorted, compare_numbers);
-  return tf_quantile (sorted, n, 0.5);
+  double upper = select_value (some, n, n / 2);
+  if (n % 2 == 1)
+    return upper;
+  double lower = some[0]; /* the greatest before it */
+  for (guint k = 1; k < n / 2; k++)
+    lower = fmax (lower, some[k]);
+  return lower + 0.5 * (upper - lower);
 }
 
 typedef struct
