@@ -48,6 +48,7 @@ int tf_verb_follow (int argc, char **argv);
 int tf_verb_laws (int argc, char **argv);
 int tf_verb_export (int argc, char **argv);
 int tf_verb_check (int argc, char **argv);
+int tf_verb_pair (int argc, char **argv);
 int tf_verb_power (int argc, char **argv);
 int tf_verb_simulate (int argc, char **argv);
 

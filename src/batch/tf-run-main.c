@@ -25,6 +25,8 @@ const TfVerb tf_verbs[] = {
     "tiltfield-run gather all.ledger part-*.ledger", tf_verb_gather },
   { "follow", "LEDGER", N_ ("Follows regions through their passages across the disk; offers what may have come round the Sun."),
     "tiltfield-run follow demo.ledger --with-hints", tf_verb_follow },
+  { "pair", "LEDGER", N_ ("Offers the scale between two instruments from frames taken nearly at once."),
+    "tiltfield-run pair demo.ledger --within 6", tf_verb_pair },
   { "laws", "LEDGER", N_ ("Tests Hale's polarity law and Joy's tilt law on a ledger."),
     "tiltfield-run laws demo.ledger --with-hints", tf_verb_laws },
   { "export", "LEDGER OUT", N_ ("Writes the catalogue; OUT ends in .csv, .vot, .fits or .json."),

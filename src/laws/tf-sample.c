@@ -64,6 +64,13 @@ tf_sample_add (TfSample *sample, const TfSampleRow *row)
   g_array_append_vals (sample->rows, row, 1);
 }
 
+void
+tf_sample_scale_flux (TfSample *sample, guint k, double factor)
+{
+  g_return_if_fail (k < sample->rows->len);
+  g_array_index (sample->rows, TfSampleRow, k).flux_mx *= factor;
+}
+
 guint
 tf_sample_get_n (const TfSample *sample)
 {
@@ -77,20 +84,31 @@ tf_sample_get (const TfSample *sample, guint k)
   return &g_array_index (sample->rows, TfSampleRow, k);
 }
 
-static int
-compare_ids (gconstpointer a, gconstpointer b)
+/* Sorts by one byte of each number, the least first: @to has room for @n. */
+static void
+sort_by_byte (const guint32 *from, guint32 *to, guint n, guint shift)
 {
-  guint32 left = *(const guint32 *)a, right = *(const guint32 *)b;
-  return (left > right) - (left < right);
+  guint start[257] = { 0 };
+  for (guint k = 0; k < n; k++)
+    start[((from[k] >> shift) & 255u) + 1]++;
+  for (guint byte = 0; byte < 256; byte++)
+    start[byte + 1] += start[byte];
+  for (guint k = 0; k < n; k++)
+    to[start[(from[k] >> shift) & 255u]++] = from[k];
 }
 
 guint
 tf_count_distinct (const guint32 *ids, guint n)
 {
   guint count = 0;
-  g_autofree guint32 *sorted = g_memdup2 (ids, n * sizeof *ids);
-  if (n > 0)
-    qsort (sorted, n, sizeof *sorted, compare_ids);
+  g_autofree guint32 *sorted = g_new (guint32, n + 1), *other = g_new (guint32, n + 1);
+  for (guint k = 0; k < n; k++)
+    sorted[k] = ids[k];
+  for (guint shift = 0; n > 0 && shift < 32; shift += 16)
+    {
+      sort_by_byte (sorted, other, n, shift);
+      sort_by_byte (other, sorted, n, shift + 8);
+    }
   for (guint k = 0; k < n; k++)
     count += k == 0 || sorted[k] != sorted[k - 1];
   return count;

@@ -60,6 +60,8 @@ void tf_sample_free (TfSample *sample);
 /** tf_sample_row_init: every quantity "absent". */
 void tf_sample_row_init (TfSampleRow *row);
 void tf_sample_add (TfSample *sample, const TfSampleRow *row);
+/** tf_sample_scale_flux: while it is being filled. */
+void tf_sample_scale_flux (TfSample *sample, guint k, double factor);
 guint tf_sample_get_n (const TfSample *sample);
 const TfSampleRow *tf_sample_get (const TfSample *sample, guint k);
 guint tf_sample_count_regions (const TfSample *sample);

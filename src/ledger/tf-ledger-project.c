@@ -8,6 +8,7 @@
 
 #include "tf-ledger-private.h"
 
+#include <math.h>
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
@@ -409,6 +410,28 @@ project_divide (TfLedger *ledger, const char *subject, JsonObject *body, GError 
 }
 
 static gboolean
+project_scale (TfLedger *ledger, const char *subject, JsonObject *body, GError **error)
+{
+  g_auto (Current) current = { 0 };
+  const char *instrument = body_text (body, "instrument");
+  if (*instrument == '\0' || person_key (ledger, body) == 0)
+    return damaged (ledger, "scale", error);
+  if (!find_current (ledger, subject, &current, error)
+      || !tf_run (ledger, error, "DELETE FROM scale WHERE instrument = ?1", "t", instrument))
+    return FALSE;
+  double factor
+      = current.body != NULL ? tf_json_member_number (current.body, "factor") : NAN;
+  return isnan (factor)
+         || tf_run (ledger, error,
+                    "INSERT INTO scale (instrument, reference, factor, sigma, evidence, person, "
+                    "clock) VALUES (?1, ?2, ?3, ?4, ?5, ?6, ?7)",
+                    "ttddtii", instrument, body_text (current.body, "reference"), factor,
+                    tf_json_member_number (current.body, "sigma"),
+                    body_text (current.body, "evidence"), person_key (ledger, current.body),
+                    current.clock);
+}
+
+static gboolean
 project_fact (TfLedger *ledger, const char *kind, const char *subject, JsonObject *body,
               GError **error)
 {
@@ -445,6 +468,8 @@ project_subject (TfLedger *ledger, const char *kind, const char *subject, JsonOb
     return project_geometry (ledger, subject, body, error);
   if (strcmp (kind, "divide") == 0)
     return project_divide (ledger, subject, body, error);
+  if (strcmp (kind, "scale") == 0)
+    return project_scale (ledger, subject, body, error);
   if (strcmp (kind, "study") == 0 || strcmp (kind, "edition") == 0)
     return tf_named_project (ledger, kind, subject, error);
   if (strcmp (kind, "link") == 0 || strcmp (kind, "cut") == 0)
@@ -502,7 +527,7 @@ tf_act_is_deed (const char *kind)
 {
   static const char *const kinds[] = { "keep",    "withdraw", "drop",   "class", "note",
                                        "resolve", "geometry", "divide", "study", "edition",
-                                       "link",    "cut",      "label",  "external", NULL };
+                                       "link",    "cut",      "label",  "external", "scale", NULL };
   return g_strv_contains (kinds, kind);
 }
 

@@ -140,6 +140,7 @@ static const char *const compared[][2] = {
   { "shift", "SELECT uid, time, clock, " PERSON " FROM @.shift t" },
   { "geometry", "SELECT frame, text, clock, " PERSON " FROM @.geometry t" },
   { "divide", "SELECT study, cycle, hemisphere, points, shown, clock, " PERSON " FROM @.divide t" },
+  { "scale", "SELECT instrument, reference, factor, sigma, evidence, clock, " PERSON " FROM @.scale t" },
   { "study", "SELECT uid, name, version, checksum, text, replica, seq, live FROM @.study" },
   { "edition", "SELECT uid, name, study, study_version, checksum, text, replica, seq, live FROM "
                "@.edition" },

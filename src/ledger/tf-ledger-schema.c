@@ -45,7 +45,7 @@
  *     acts done as one (a split: two marks) name the first of them in their bodies: `bundle`; they are undone as one
  *     renumber      region                 later   region.number      two replicas with one letter
  *     link, cut     two sightings          tie     these marks or hints are one region, or are not: in one passage, or on later rotations
- *     scale         instrument             later   instrument.scale
+ *     scale         instrument                     scale          what its field is multiplied by to be like another's; none = taken back
  *     divide        study, minimum, hemisphere     divide         points as drawn, whether polarity was in sight; none = computed again
  *     study         study (of its name)    study           a version of a study, sieve included; the last one stands
  *     edition       study, edition         edition         a named, checksummed state of a study with its figures
@@ -220,9 +220,14 @@ static const char projection_7[]
       "person INTEGER NOT NULL REFERENCES person (id), what TEXT NOT NULL, text TEXT NOT NULL, "
       "clock INTEGER NOT NULL, PRIMARY KEY (region, person, what)) STRICT, WITHOUT ROWID;";
 
+static const char projection_8[]
+    = "CREATE TABLE scale (instrument TEXT PRIMARY KEY, reference TEXT NOT NULL, "
+      "factor REAL NOT NULL, sigma REAL, evidence TEXT NOT NULL, "
+      "person INTEGER NOT NULL REFERENCES person (id), clock INTEGER NOT NULL) STRICT, WITHOUT ROWID;";
+
 const char *const tf_ledger_projections[]
     = { projection_1, projection_2, projection_3, projection_4,
-        projection_5, projection_6, projection_7, NULL };
+        projection_5, projection_6, projection_7, projection_8, NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -422,6 +427,8 @@ static const char version_7_views[]
 
 static const char *const version_7[] = { projection_7, version_7_views, NULL };
 
+static const char *const version_8[] = { projection_8, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
@@ -430,5 +437,6 @@ const TfMigration tf_ledger_migrations[] = {
   { 5, version_5 },
   { 6, version_6 },
   { 7, version_7 },
+  { 8, version_8 },
   { 0, NULL },
 };

@@ -16,7 +16,7 @@
   "FROM deed d JOIN act a ON a.replica = d.replica AND a.seq = d.seq"                              \
   " WHERE d.person = ?1 AND d.replica = ?2 AND a.kind IN ('keep', 'withdraw', 'drop', 'class', "   \
   "'note', 'resolve', 'geometry', 'divide', 'study', 'edition', 'link', 'cut', "   \
-  "'label', 'external')"
+  "'label', 'external', 'scale')"
 
 typedef struct
 {

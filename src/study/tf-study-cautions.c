@@ -14,7 +14,7 @@ compare_text (gconstpointer a, gconstpointer b)
 }
 
 static void
-note_instruments (TfFindings *findings, const TfStudyRows *rows)
+note_instruments (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows)
 {
   g_autoptr (GPtrArray) instruments = g_ptr_array_new ();
   for (guint k = 0; rows->rows != NULL && k < tf_sample_get_n (findings->sample); k++)
@@ -24,12 +24,27 @@ note_instruments (TfFindings *findings, const TfStudyRows *rows)
       if (!g_ptr_array_find_with_equal_func (instruments, row->instrument, g_str_equal, NULL))
         g_ptr_array_add (instruments, row->instrument);
     }
-  if (instruments->len < 2)
+  if (instruments->len < 2 || !tf_study_unscaled (findings, study, rows))
     return;
   g_ptr_array_sort (instruments, compare_text);
   g_ptr_array_add (instruments, NULL);
   g_autofree char *names = g_strjoinv (", ", (char **)instruments->pdata);
   tf_notes_add (findings->cautions, "instruments-unscaled-pooled", "s", names);
+}
+
+/* "B × 1.310 (A)": what was applied, and like whose field that is. */
+static void
+note_scales (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows)
+{
+  g_autoptr (GString) names = g_string_new (NULL);
+  for (guint k = 0; study->sieve.with_scales && rows->scales != NULL && k < rows->scales->len; k++)
+    {
+      const TfKeptScale *scale = g_ptr_array_index (rows->scales, k);
+      g_string_append_printf (names, "%s%s × %.3f (%s)", names->len > 0 ? ", " : "",
+                              scale->instrument, scale->factor, scale->reference);
+    }
+  if (names->len > 0)
+    tf_notes_add (findings->cautions, "instruments-scaled", "s", names->str);
 }
 
 /* While nothing is linked, or as far as picks lie at an end of what was seen of them. */
@@ -83,7 +98,8 @@ tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudy
   note_sampling (findings, study);
   if (findings->n_hints > 0)
     tf_notes_add (cautions, "hints-counted", "ii", (int)findings->n_hints, (int)findings->n_marks);
-  note_instruments (findings, rows);
+  note_instruments (findings, study, rows);
+  note_scales (findings, study, rows);
   note_divides (cautions, study);
   note_provisional (findings, study);
   if (findings->n_other_floor > 0)

@@ -3,6 +3,7 @@
  */
 #pragma once
 
+#include "tf-ledger-scales.h"
 #include "tf-study.h"
 
 G_BEGIN_DECLS
@@ -13,10 +14,18 @@ typedef struct
 {
   const GPtrArray *rows; /* TfRow; NULL: there is nothing but the sample rows */
   TfSample *all;
+  const GPtrArray *scales; /* TfKeptScale; NULL: none */
 } TfStudyRows;
 
 /** tf_study_sample_rows: (transfer full): ledger rows as sample rows. */
 TfSample *tf_study_sample_rows (const GPtrArray *rows);
+/** tf_study_scale: multiplies the fluxes of @all by the kept scales of their instruments; @on FALSE:
+ * divides by them again. Returns: how many rows have one. */
+guint tf_study_scale (TfSample *all, const GPtrArray *rows, const GPtrArray *scales, gboolean on);
+/** tf_study_unscaled: whether instruments are pooled in the picks without a scale between them: more
+ * than one, and one at least that has neither a scale nor is a scale's reference. */
+gboolean
+tf_study_unscaled (const TfFindings *findings, const TfStudy *study, const TfStudyRows *rows);
 /** tf_study_dup_divides: the moved divides of the study under its options. */
 TfDivides *tf_study_dup_divides (const TfStudy *study);
 /** tf_study_judge: (transfer full): a verdict for each row, as if every minimum had come @later_s

@@ -31,6 +31,7 @@ typedef struct
   gboolean bracketed;   /* picks with their greatest flux between other marks alone */
   gboolean marks_alone; /* no hints */
   double floor_factor;  /* of the even floor; 0: each row's own floor */
+  gboolean turn_scales; /* scales of instruments on where they are off, off where on */
   gboolean with_hints;  /* rows with the hints */
 } Variant;
 
@@ -291,6 +292,22 @@ limb_none (Variant *v)
 /* -- the rows ----------------------------------------------------------------------------------- */
 
 static gboolean
+scales_on (Variant *v)
+{
+  v->turn_scales = !v->study.sieve.with_scales;
+  v->study.sieve.with_scales = TRUE;
+  return v->turn_scales;
+}
+
+static gboolean
+scales_off (Variant *v)
+{
+  v->turn_scales = v->study.sieve.with_scales;
+  v->study.sieve.with_scales = FALSE;
+  return v->turn_scales;
+}
+
+static gboolean
 hints_out (Variant *v)
 {
   v->marks_alone = TRUE;
@@ -349,6 +366,8 @@ static const Choice choices[] = {
   { "cmd-within-30", N_ ("|CMD| ≤ 30°"), FROM_MARKS, limb_30 },
   { "cmd-within-45", N_ ("|CMD| ≤ 45°"), FROM_MARKS, limb_45 },
   { "limb-taken-in", N_ ("to the limb"), FROM_MARKS, limb_none },
+  { "instruments-scaled", N_ ("fluxes by the instruments' scales"), FROM_MARKS, scales_on },
+  { "instruments-not-scaled", N_ ("fluxes as measured"), FROM_MARKS, scales_off },
   { "hints-left-out", N_ ("hints left out"), FROM_MARKS, hints_out },
   { "hints-taken-in", N_ ("hints taken in"), FROM_ROWS, hints_in },
   { "ephemeral-alone", N_ ("ephemeral regions alone"), FROM_PICKS, ephemeral_alone },
@@ -370,6 +389,8 @@ tf_what_if_missing (const char *missing)
     return _ ("not measured");
   if (g_strcmp0 (missing, "not-linked") == 0)
     return _ ("marks are not linked");
+  if (g_strcmp0 (missing, "no-scale") == 0)
+    return _ ("no scale was kept");
   return g_strcmp0 (missing, "no-hints") == 0 ? _ ("no hints") : "";
 }
 
@@ -483,8 +504,29 @@ fill_from_ledger (TfWhatIf *row, const Variant *v, const Context *context)
       return;
     }
   g_autoptr (TfSample) all = tf_study_sample_rows (found);
-  const TfStudyRows rows = { found, all };
+  if (v->study.sieve.with_scales)
+    tf_study_scale (all, found, context->rows->scales, TRUE);
+  const TfStudyRows rows = { found, all, context->rows->scales };
   fill_from (row, v, FROM_MARKS, &rows, context->findings);
+}
+
+/* The same rows with the scales on, or off. Of one instrument there is nothing to say. */
+static void
+fill_scaled (TfWhatIf *row, const Variant *v, const Context *context)
+{
+  const TfStudyRows *own = context->rows;
+  g_autoptr (TfSample) all = tf_sample_new ();
+  for (guint k = 0; k < tf_sample_get_n (own->all); k++)
+    tf_sample_add (all, tf_sample_get (own->all, k));
+  if (tf_study_scale (all, own->rows, own->scales, v->study.sieve.with_scales) > 0)
+    {
+      const TfStudyRows rows = { own->rows, all, own->scales };
+      fill_from (row, v, FROM_MARKS, &rows, context->findings);
+    }
+  else if (tf_study_unscaled (context->findings, context->study, own))
+    row->missing = "no-scale";
+  else
+    row->name = NULL;
 }
 
 /* Choices among the marks of a passage say nothing while each has one. */
@@ -507,7 +549,9 @@ add_choice (const Choice *choice, const Context *context, TfWhatIf *row)
   if (!choice->change (&v))
     return;
   *row = (TfWhatIf){ .name = choice->name, .title = choice->title, .share = NAN, .slope = NAN };
-  if (needs_passages (choice) && !is_linked (context->findings))
+  if (v.turn_scales)
+    fill_scaled (row, &v, context);
+  else if (needs_passages (choice) && !is_linked (context->findings))
     row->missing = "not-linked";
   else if (choice->from == FROM_ROWS && context->ledger == NULL)
     row->missing = "not-measured";

@@ -101,7 +101,8 @@ static void
 add_conditions (GString *out, const TfFindings *findings)
 {
   static const char *const codes[]
-      = { "instruments-unscaled-pooled", "divides-moved", "divides-shown", "minimum-provisional", "rows-simulated" };
+      = { "instruments-unscaled-pooled", "instruments-scaled", "divides-moved", "divides-shown",
+          "minimum-provisional",         "rows-simulated" };
   for (guint k = 0; k < G_N_ELEMENTS (codes); k++)
     {
       const TfNote *note = tf_notes_find (findings->cautions, codes[k]);

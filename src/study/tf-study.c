@@ -26,6 +26,8 @@ const TfOption tf_sieve_options[] = {
     SIEVE (separation_min_deg) },
   { "ephemeral", TF_OPTION_CHOICE, "", TF_EPHEMERAL_OUT, 0, 2, ephemeral_names,
     N_ ("what to do with ephemeral regions"), SIEVE (ephemeral) },
+  { "with-scales", TF_OPTION_BOOL, "", 0, 0, 1, NULL,
+    N_ ("multiply fluxes by the scales of instruments that people kept"), SIEVE (with_scales) },
   { "with-models", TF_OPTION_BOOL, "", 0, 0, 1, NULL, N_ ("take model maps in"),
     SIEVE (with_models) },
   { NULL },
@@ -283,7 +285,7 @@ TfFindings *
 tf_study_run_sample (const TfStudy *study, const TfSample *all)
 {
   g_return_val_if_fail (study != NULL && all != NULL, NULL);
-  const TfStudyRows rows = { NULL, (TfSample *)all };
+  const TfStudyRows rows = { NULL, (TfSample *)all, NULL };
   return tf_study_run_rows (study, &rows, NULL, NAN, TRUE);
 }
 
@@ -334,6 +336,11 @@ tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
   if (found == NULL)
     return NULL;
   g_autoptr (TfSample) all = tf_study_sample_rows (found);
-  const TfStudyRows rows = { found, all };
+  g_autoptr (GPtrArray) scales = tf_ledger_scales (ledger, error);
+  if (scales == NULL)
+    return NULL;
+  if (study->sieve.with_scales)
+    tf_study_scale (all, found, scales, TRUE);
+  const TfStudyRows rows = { found, all, scales };
   return tf_study_run_rows (study, &rows, ledger, floor, TRUE);
 }

@@ -53,6 +53,7 @@ typedef struct
   double separation_min_deg; /* 0 */
   int ephemeral;             /* TfEphemeral */
   gboolean with_models;      /* model maps */
+  gboolean with_scales;      /* fluxes by the instruments' kept scales; else as measured */
 } TfSieveParams;
 extern const TfOption tf_sieve_options[];
 
@@ -67,7 +68,7 @@ typedef struct
   TfJoyParams joy;
   TfDriftParams drift;
   TfEmergenceParams emergence;
-  TfDivides *divides; /* the moved ones; their options are those of @divide. NULL: all computed */
+  TfDivides *divides;  /* the moved ones; their options are those of @divide. NULL: all computed */
   char *divides_shown; /* "24 N, 25 S": those moved with polarity in sight; NULL: none */
 } TfStudy;
 TfStudy *tf_study_new_default (void);
@@ -93,7 +94,7 @@ typedef struct
 } TfWhatIf;
 
 /* Of the even floor, in the what-ifs about it. */
-#define TF_WHAT_IF_LOWER 0.8
+#define TF_WHAT_IF_LOWER  0.8
 #define TF_WHAT_IF_HIGHER 1.2
 
 /** tf_what_if_names: every choice in the order in which they are shown, NULL-ended (transfer

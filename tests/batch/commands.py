@@ -100,7 +100,7 @@ def _():
     verbs = call(code=2).stderr
     assert "inspect" in verbs and "laws" in verbs
     call("--help")
-    for verb in ("inspect", "where", "measure", "hints", "fill", "gather", "follow", "laws", "export", "check", "simulate", "power"):
+    for verb in ("inspect", "where", "measure", "hints", "fill", "gather", "follow", "laws", "export", "check", "simulate", "power", "pair"):
         assert f"tiltfield-run {verb}" in call(verb, "--help").stdout, verb
 
 
@@ -361,6 +361,25 @@ def _():
     curve = document("power", "--json", "--what", "share", "--first", "0.05", "--second", "0.3", "--least", "20", "--most", "160", "--runs", "40")
     powers = [point["power"] for point in curve["points"]]
     assert powers[-1] > 0.9 > powers[0] and 20 < curve["regions_needed"] < 160, curve
+
+
+@test("pair offers a scale, keeps it only when told, and laws applies it only when told")
+def _():
+    ledger = os.path.join(work, "pair.ledger")
+    shutil.copy(os.path.join(work, "one.ledger"), ledger)
+    offered = document("pair", "--json", ledger)
+    assert offered and all(row["cells"] >= 20 and not row["kept"] for row in offered), offered
+    one = offered[0]
+    assert one["interval"][0] < 1 < one["interval"][1] or abs(one["factor"] - 1) < 0.05, one  # invented frames of one sun
+    laws = document("laws", "--json", "--with-hints", ledger)
+    assert {row["choice"]: row for row in laws["what_if"]}["instruments-scaled"]["missing"] == "no-scale"
+    call("pair", "--keep", one["instrument"], ledger, code=2)
+    kept = document("pair", "--json", "--keep", one["instrument"], "--person", "north", ledger)
+    assert [row["instrument"] for row in kept if row["kept"]] == [one["instrument"]], kept
+    laws = document("laws", "--json", "--with-hints", ledger)
+    assert {row["choice"]: row for row in laws["what_if"]}["instruments-scaled"]["n"] > 0
+    assert "instruments-scaled" in {note["code"] for note in document("laws", "--json", "--with-hints", "--with-scales", "yes", ledger)["cautions"]}
+    call("check", ledger)
 
 
 @test("laws gives every key, counts hints apart, and without marks says what to do")

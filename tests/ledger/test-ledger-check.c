@@ -9,6 +9,7 @@
 #include <string.h>
 
 #include "tf-ledger-divides.h"
+#include "tf-ledger-scales.h"
 
 /* Two frames with hints, five marks, a drop, a class, a note, a number, two deeds as one, one undone deed. */
 static void
@@ -46,6 +47,8 @@ set_up_full (Fixture *f, gconstpointer data)
   double lats[] = { 17, 14 };
   const TfMovedDivide divide = { 24, -1, 2, times, lats, TRUE };
   g_assert_true (tf_ledger_set_divide (f->ledger, "default", &divide, person, &error));
+  const TfKeptScale scale = { (char *)"B", (char *)"A", 1.25, 0.5, (char *)"pair", NULL };
+  g_assert_true (tf_ledger_set_scale (f->ledger, &scale, other, &error));
   g_assert_true (tf_ledger_set_external (f->ledger, fixture_region (f->ledger, one), other, "11861",
                                          &error));
   g_assert_true (tf_ledger_begin_bundle (f->ledger, "several", &error));
@@ -103,6 +106,7 @@ static const Tampering tamperings[] = {
   { "a-geometry", "UPDATE geometry SET text = replace (text, '480', '481')", "check-projection" },
   { "a-geometry-more", "INSERT INTO geometry VALUES (2, 1, '1,2,30,4', 9)", "check-projection" },
   { "a-divide", "UPDATE divide SET points = replace (points, '17', '27')", "check-projection" },
+  { "a-scale", "UPDATE scale SET factor = 1.5", "check-projection" },
   { "a-divide-never-seen", "UPDATE divide SET shown = 0", "check-projection" },
   { "a-drop-more", "INSERT INTO dropped VALUES (4, 1)", "check-projection" },
   { "an-undone-deed", "UPDATE deed SET undone = 0", "check-projection" },

@@ -10,6 +10,7 @@ main (int argc, char **argv)
   add_acts_tests ();
   add_check_tests ();
   add_divides_tests ();
+  add_scales_tests ();
   add_faults_tests ();
   add_file_tests ();
   add_follow_tests ();

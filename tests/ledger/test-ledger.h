@@ -46,6 +46,7 @@ gboolean fixture_finds (TfLedger *ledger, const char *code);
 void add_acts_tests (void);
 void add_check_tests (void);
 void add_divides_tests (void);
+void add_scales_tests (void);
 void add_faults_tests (void);
 void add_file_tests (void);
 void add_follow_tests (void);
