@@ -209,5 +209,6 @@ tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error)
   gboolean ok = check_inside (ledger, findings, error);
   tf_ledger_rollback (ledger);
   return ok && tf_check_schema (ledger, findings, error)
-         && tf_check_projections (ledger, findings, error);
+         && tf_check_projections (ledger, findings, error)
+         && (!tf_pack_is_there (ledger) || tf_pack_check (ledger, findings, error));
 }

@@ -103,7 +103,7 @@ tf_ledger_migrate (TfLedger *ledger, int from, gboolean is_new, GError **error)
         tf_ledger_rollback (ledger);
         return FALSE;
       }
-  if (!stamp (ledger, error))
+  if (!tf_pack_spoil_all (ledger, error) || !stamp (ledger, error))
     {
       tf_ledger_rollback (ledger);
       return FALSE;

@@ -195,7 +195,8 @@ tf_ledger_remove_outside (TfLedger *ledger, gint64 table, GError **error)
   g_return_val_if_fail (ledger != NULL, FALSE);
   if (!tf_ledger_begin (ledger, error))
     return FALSE;
-  if (!tf_run (ledger, error,
+  if (!tf_pack_spoil_outside (ledger, table, error)
+      || !tf_run (ledger, error,
                "DELETE FROM point WHERE hint = 2 AND mark IN (SELECT id FROM outside_row WHERE"
                " outside = ?1)",
                "i", table)

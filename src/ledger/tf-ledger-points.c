@@ -10,6 +10,7 @@
 #include "tf-ledger-private.h"
 
 #include <math.h>
+#include <string.h>
 
 #define MEASURED                                                                                   \
   " e.time, e.year, e.lat_deg, e.flux_unsigned_mx, e.axis_tilt_deg, e.mu, e.cmd_deg, "             \
@@ -46,7 +47,8 @@ const char tf_point_all_sql[]
 gboolean
 tf_point_refresh_outside (TfLedger *ledger, gint64 outside, GError **error)
 {
-  return tf_run (ledger, error,
+  return tf_pack_spoil_outside (ledger, outside, error)
+         && tf_run (ledger, error,
                  "DELETE FROM point WHERE hint = 2 AND mark IN (SELECT id FROM outside_row WHERE "
                  "outside = ?1)",
                  "i", outside)
@@ -57,14 +59,16 @@ tf_point_refresh_outside (TfLedger *ledger, gint64 outside, GError **error)
 gboolean
 tf_point_refresh_mark (TfLedger *ledger, gint64 mark, GError **error)
 {
-  return tf_run (ledger, error, "DELETE FROM point WHERE hint = 0 AND mark = ?1", "i", mark)
+  return tf_pack_spoil (ledger, 0, mark, error)
+         && tf_run (ledger, error, "DELETE FROM point WHERE hint = 0 AND mark = ?1", "i", mark)
          && tf_run (ledger, error, "INSERT INTO point " MARK_POINTS " AND m.id = ?1", "i", mark);
 }
 
 gboolean
 tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error)
 {
-  return tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND mark = ?1", "i", hint)
+  return tf_pack_spoil (ledger, 1, hint, error)
+         && tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND mark = ?1", "i", hint)
          && tf_run (ledger, error, "INSERT INTO point " HINT_POINTS " AND h.id = ?1", "i", hint);
 }
 
@@ -72,35 +76,36 @@ tf_point_refresh_hint (TfLedger *ledger, gint64 hint, GError **error)
 gboolean
 tf_point_refresh_frame (TfLedger *ledger, gint64 frame, GError **error)
 {
-  return tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND frame = ?1", "i", frame)
+  return tf_pack_spoil_frame (ledger, frame, error)
+         && tf_run (ledger, error, "DELETE FROM point WHERE hint = 1 AND frame = ?1", "i", frame)
          && tf_run (ledger, error, "INSERT INTO point " HINT_POINTS " AND h.frame = ?1", "i",
                     frame);
 }
 
-static void
-read_point (TfPoint *point, sqlite3_stmt *query)
+/* Byte by byte the same for the same row, so that packs can be compared. */
+void
+tf_point_read (TfPoint *point, sqlite3_stmt *query)
 {
-  *point = (TfPoint){
-    .hint = sqlite3_column_int (query, 0) == 1,
-    .outside = sqlite3_column_int (query, 0) == 2,
-    .mark = sqlite3_column_int64 (query, 1),
-    .frame = sqlite3_column_int64 (query, 2),
-    .region = (guint32)sqlite3_column_int64 (query, 3),
-    .time = { tf_column_double (query, 4) },
-    .year = tf_column_double (query, 5),
-    .lat_deg = (float)tf_column_double (query, 6),
-    .flux_mx = (float)tf_column_double (query, 7),
-    .tilt_deg = (float)tf_column_double (query, 8),
-    .mu = (float)tf_column_double (query, 9),
-    .cmd_deg = (float)tf_column_double (query, 10),
-    .separation_deg = (float)tf_column_double (query, 11),
-    .imbalance = (float)tf_column_double (query, 12),
-    .leading = (gint8)sqlite3_column_int (query, 13),
-    .leading_sure = (gint8)sqlite3_column_int (query, 14),
-    .unipolar = (gint8)sqlite3_column_int (query, 15),
-    .straddles = (gint8)sqlite3_column_int (query, 16),
-    .witnesses_differ = (gint8)sqlite3_column_int (query, 17),
-  };
+  memset (point, 0, sizeof *point);
+  point->hint = sqlite3_column_int (query, 0) == 1;
+  point->outside = sqlite3_column_int (query, 0) == 2;
+  point->mark = sqlite3_column_int64 (query, 1);
+  point->frame = sqlite3_column_int64 (query, 2);
+  point->region = (guint32)sqlite3_column_int64 (query, 3);
+  point->time.s = tf_column_double (query, 4);
+  point->year = tf_column_double (query, 5);
+  point->lat_deg = (float)tf_column_double (query, 6);
+  point->flux_mx = (float)tf_column_double (query, 7);
+  point->tilt_deg = (float)tf_column_double (query, 8);
+  point->mu = (float)tf_column_double (query, 9);
+  point->cmd_deg = (float)tf_column_double (query, 10);
+  point->separation_deg = (float)tf_column_double (query, 11);
+  point->imbalance = (float)tf_column_double (query, 12);
+  point->leading = (gint8)sqlite3_column_int (query, 13);
+  point->leading_sure = (gint8)sqlite3_column_int (query, 14);
+  point->unipolar = (gint8)sqlite3_column_int (query, 15);
+  point->straddles = (gint8)sqlite3_column_int (query, 16);
+  point->witnesses_differ = (gint8)sqlite3_column_int (query, 17);
 }
 
 static int
@@ -123,15 +128,65 @@ compare_points (gconstpointer a, gconstpointer b)
   return p->hint != q->hint ? p->hint - q->hint : (p->mark > q->mark) - (p->mark < q->mark);
 }
 
-static gboolean
-in_order (const GArray *points)
+/* Merges neighbouring runs that are in order until one is left: cheap for what nearly is, as points
+ * are: by mark they come in time, and marks and hints are two runs. */
+static guint
+end_of_run (const TfPoint *points, guint from, guint n)
 {
-  for (guint k = 1; k < points->len; k++)
-    if (compare_points (&g_array_index (points, TfPoint, k - 1),
-                        &g_array_index (points, TfPoint, k))
-        > 0)
-      return FALSE;
-  return TRUE;
+  guint end = from + 1;
+  while (end < n && compare_points (&points[end - 1], &points[end]) <= 0)
+    end++;
+  return MIN (end, n);
+}
+
+static void
+merge (const TfPoint *a, guint n, const TfPoint *b, guint m, TfPoint *out)
+{
+  guint i = 0, j = 0;
+  while (i < n && j < m)
+    *out++ = compare_points (&a[i], &b[j]) <= 0 ? a[i++] : b[j++];
+  memcpy (out, a + i, (n - i) * sizeof *out);
+  memcpy (out + (n - i), b + j, (m - j) * sizeof *out);
+}
+
+static void
+sort_points (GArray *points)
+{
+  guint n = points->len;
+  TfPoint *from = (TfPoint *)(gpointer)points->data;
+  if (n < 2 || end_of_run (from, 0, n) == n)
+    return;
+  g_autofree TfPoint *other = g_new (TfPoint, n);
+  TfPoint *to = other;
+  for (guint runs = 2; runs > 1;)
+    {
+      runs = 0;
+      for (guint at = 0; at < n; runs++)
+        {
+          guint middle = end_of_run (from, at, n), end = middle < n ? end_of_run (from, middle, n) : n;
+          merge (from + at, middle - at, from + middle, end - middle, to + at);
+          at = end;
+        }
+      TfPoint *swap = from;
+      from = to;
+      to = swap;
+    }
+  if (from == other)
+    memcpy (points->data, other, n * sizeof *other);
+}
+
+static gboolean
+read_rows (TfLedger *ledger, GArray *points, GError **error)
+{
+  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, "SELECT * FROM point", "");
+  int more = -1;
+  while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
+    {
+      TfPoint point;
+      tf_point_read (&point, query);
+      g_array_append_val (points, point);
+    }
+  return more == 0;
 }
 
 GArray *
@@ -139,17 +194,9 @@ tf_ledger_points (TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (TfPoint));
-  g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, "SELECT * FROM point", "");
-  int more = -1;
-  while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
-    {
-      TfPoint point;
-      read_point (&point, query);
-      g_array_append_val (points, point);
-    }
-  if (more != 0)
+  gboolean packed = tf_pack_is_there (ledger); /* not in an older one that cannot be written */
+  if (!(packed ? tf_pack_read (ledger, points, error) : read_rows (ledger, points, error)))
     return NULL;
-  if (!in_order (points))
-    g_array_sort (points, compare_points);
+  sort_points (points);
   return g_steal_pointer (&points);
 }

@@ -212,6 +212,21 @@ enum
 /* Reads them beginning at @column. FALSE: nobody worked them out. */
 gboolean tf_complexity_from_row (TfComplexityRow *row, sqlite3_stmt *query, int column);
 
+/* -- tf-ledger-points.c, tf-ledger-pack.c
+ * -------------------------------------------------------------- */
+void tf_point_read (TfPoint *point, sqlite3_stmt *query);
+/* The block that holds a point (kind as point.hint), or all of a frame's hints, of an outside table's
+ * rows, of the ledger, is to be filled anew before the commit. */
+gboolean tf_pack_spoil (TfLedger *ledger, int kind, gint64 mark, GError **error);
+gboolean tf_pack_spoil_frame (TfLedger *ledger, gint64 frame, GError **error);
+gboolean tf_pack_spoil_outside (TfLedger *ledger, gint64 outside, GError **error);
+gboolean tf_pack_spoil_all (TfLedger *ledger, GError **error);
+gboolean tf_pack_fill (TfLedger *ledger, GError **error);
+gboolean tf_pack_is_there (TfLedger *ledger);
+/* Appends all points, in no order. */
+gboolean tf_pack_read (TfLedger *ledger, GArray *points, GError **error);
+gboolean tf_pack_check (TfLedger *ledger, TfNotes *findings, GError **error);
+
 /* -- tf-ledger-info.c
  * ------------------------------------------------------------------------------ */
 char *tf_info_dup_text (const TfFrameInfo *info);

@@ -225,9 +225,13 @@ static const char projection_8[]
       "factor REAL NOT NULL, sigma REAL, evidence TEXT NOT NULL, "
       "person INTEGER NOT NULL REFERENCES person (id), clock INTEGER NOT NULL) STRICT, WITHOUT ROWID;";
 
+/* Of points: derived, and not compared by rows: tf_pack_check(). */
+static const char pack_sql[] = "CREATE TABLE pack (id INTEGER PRIMARY KEY, data BLOB) STRICT;"
+                               "CREATE INDEX pack_spoilt ON pack (id) WHERE data IS NULL;";
+
 const char *const tf_ledger_projections[]
-    = { projection_1, projection_2, projection_3, projection_4,
-        projection_5, projection_6, projection_7, projection_8, NULL };
+    = { projection_1, projection_2, projection_3, projection_4, projection_5,
+        projection_6, projection_7, projection_8, pack_sql,     NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -429,6 +433,8 @@ static const char *const version_7[] = { projection_7, version_7_views, NULL };
 
 static const char *const version_8[] = { projection_8, NULL };
 
+static const char *const version_9[] = { pack_sql, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
@@ -438,5 +444,6 @@ const TfMigration tf_ledger_migrations[] = {
   { 6, version_6 },
   { 7, version_7 },
   { 8, version_8 },
+    { 9, version_9 },
   { 0, NULL },
 };

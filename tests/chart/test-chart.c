@@ -85,6 +85,7 @@ main (int argc, char **argv)
   add_overlay_tests ();
   add_plate_figure_tests ();
   add_laws_chart_tests ();
+  add_power_plot_tests ();
   add_sheet_tests ();
   return g_test_run ();
 }

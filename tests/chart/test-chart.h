@@ -36,4 +36,5 @@ void add_wings_tests (void);
 void add_overlay_tests (void);
 void add_plate_figure_tests (void);
 void add_laws_chart_tests (void);
+void add_power_plot_tests (void);
 void add_sheet_tests (void);
