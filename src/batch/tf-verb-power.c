@@ -7,6 +7,7 @@
 
 #include "tf-batch.h"
 #include "tf-json.h"
+#include "tf-power-plot.h"
 #include "tf-power-run.h"
 
 /* power: how many regions are needed to tell two slopes or two shares apart. */
@@ -67,10 +68,12 @@ int
 tf_verb_power (int argc, char **argv)
 {
   gboolean json = FALSE;
+  g_autofree char *figure = NULL;
   TfPowerParams params;
   tf_options_reset (tf_power_options, &params);
   const GOptionEntry entries[] = {
     { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
+    { "figure", 0, 0, G_OPTION_ARG_FILENAME, &figure, N_ ("write the curve as PDF, SVG or PNG"), "FILE" },
     { NULL },
   };
   GOptionContext *context = tf_batch_context ("power");
@@ -83,7 +86,7 @@ tf_verb_power (int argc, char **argv)
   g_autoptr (GError) error = NULL;
   g_autoptr (TfWork) work = tf_batch_work_new (0);
   g_autoptr (TfPowerCurve) curve = tf_power_run (&params, work, &error);
-  if (curve == NULL)
+  if (curve == NULL || (figure != NULL && !tf_power_plot_write (curve, params.power, figure, &error)))
     {
       tf_batch_say_error (error);
       return TF_EXIT_NOTHING;
