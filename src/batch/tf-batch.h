@@ -104,6 +104,9 @@ void tf_table_add (TfTable *table, const char *format, ...) G_GNUC_PRINTF (2, 3)
 /** tf_table_dup_text: lines indented by two, each ended. */
 char *tf_table_dup_text (const TfTable *table);
 
+/** tf_batch_write_figures: the charts that have something to show, as FOLDER/NAME.pdf. */
+gboolean
+tf_batch_write_figures (const TfFindings *findings, const TfStudy *study, const char *folder, GError **error);
 /** tf_batch_print_findings: a study's findings for a person. */
 void tf_batch_print_findings (const TfFindings *findings, const TfStudy *study);
 /** tf_batch_export_series: one region through its passages into the table @out; returns the exit code. */

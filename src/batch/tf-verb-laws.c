@@ -23,10 +23,12 @@ int
 tf_verb_laws (int argc, char **argv)
 {
   gboolean json = FALSE, with_hints = FALSE, floors = FALSE;
+  g_autofree char *figures = NULL;
   g_autoptr (TfStudy) study = tf_study_new_default ();
   const GOptionEntry entries[] = {
     { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
     { "with-hints", 0, 0, G_OPTION_ARG_NONE, &with_hints, N_ ("take hints in, counted apart"), NULL },
+    { "figures", 0, 0, G_OPTION_ARG_FILENAME, &figures, N_ ("write the charts into this folder as PDF"), "DIR" },
     { "measure-floors", 0, 0, G_OPTION_ARG_NONE, &floors,
       N_ ("measure with the floor a fifth lower and higher, too, for the what-ifs (opens the frames)"), NULL },
     { NULL },
@@ -52,7 +54,7 @@ tf_verb_laws (int argc, char **argv)
   gboolean measured = ledger != NULL && (!floors || measure_floors (ledger, with_hints, &error));
   gboolean ready = measured && tf_study_read_divides (study, ledger, &error);
   g_autoptr (TfFindings) findings = ready ? tf_study_run (study, ledger, &error) : NULL;
-  if (findings == NULL)
+  if (findings == NULL || (figures != NULL && !tf_batch_write_figures (findings, study, figures, &error)))
     {
       tf_batch_say_error (error);
       return TF_EXIT_NOTHING;

@@ -52,26 +52,53 @@ reading_free (gpointer data)
   g_free (r);
 }
 
+/* The dots of the points from first to end - 1. */
+typedef struct
+{
+  const Reading *reading;
+  guint first, end;
+} Part;
+
+static gpointer
+judge_part (gpointer data)
+{
+  const Part *part = data;
+  const Reading *r = part->reading;
+  for (guint k = part->first; k < part->end; k++)
+    {
+      const TfPoint *p = &g_array_index (r->points, TfPoint, k);
+      g_array_index (r->dots, TfWingsDot, k)
+          = (TfWingsDot){ .year = p->year,
+                          .lat_deg = p->lat_deg,
+                          .flux_mx = p->flux_mx,
+                          .leading = p->leading,
+                          .verdict = (gint8)tf_judge_point (r->judge, p).kind,
+                          .hint = p->hint,
+                          .id = (gint64)k + 1 };
+    }
+  return NULL;
+}
+
+/* Half of them in a second thread when there are many. */
 static void
 make_dots (Reading *r)
 {
-  r->dots = g_array_sized_new (FALSE, FALSE, sizeof (TfWingsDot), r->points->len);
-  r->mark_dots = g_array_new (FALSE, FALSE, sizeof (TfWingsDot));
-  for (guint k = 0; k < r->points->len; k++)
-    {
-      const TfPoint *p = &g_array_index (r->points, TfPoint, k);
-      TfVerdict verdict = tf_judge_point (r->judge, p);
-      TfWingsDot dot = { .year = p->year,
-                         .lat_deg = p->lat_deg,
-                         .flux_mx = p->flux_mx,
-                         .leading = p->leading,
-                         .verdict = (gint8)verdict.kind,
-                         .hint = p->hint,
-                         .id = (gint64)k + 1 };
-      g_array_append_val (r->dots, dot);
-      if (!p->hint)
-        g_array_append_val (r->mark_dots, dot);
-    }
+  enum
+  {
+    MANY = 50000
+  };
+  guint n = r->points->len, middle = n > MANY ? n / 2 : n;
+  r->dots = g_array_sized_new (FALSE, FALSE, sizeof (TfWingsDot), n);
+  g_array_set_size (r->dots, n);
+  Part parts[] = { { r, 0, middle }, { r, middle, n } };
+  GThread *other = middle < n ? g_thread_new ("tf-dots", judge_part, &parts[1]) : NULL;
+  judge_part (&parts[0]);
+  if (other != NULL)
+    g_thread_join (other);
+  r->mark_dots = g_array_sized_new (FALSE, FALSE, sizeof (TfWingsDot), n);
+  for (guint k = 0; k < n; k++)
+    if (!g_array_index (r->dots, TfWingsDot, k).hint)
+      g_array_append_val (r->mark_dots, g_array_index (r->dots, TfWingsDot, k));
 }
 
 static char **

@@ -412,6 +412,13 @@ def _():
     measured = document("laws", "--json", "--with-hints", "--measure-floors", ledger)
     assert all(row["n"] > 0 for row in measured["what_if"] if row["choice"].startswith("floor-")), measured["what_if"]
     assert document("laws", "--json", "--with-hints", "--sampling", "every-mark", ledger)["sample"]["rule"] == "every-mark"
+    into = os.path.join(work, "figures")
+    call("laws", "--with-hints", "--figures", into, ledger)
+    names = sorted(os.listdir(into))
+    assert {"hale.pdf", "joy.pdf", "tilts.pdf", "wings.pdf"} <= set(names), names
+    for name in names:
+        with open(os.path.join(into, name), "rb") as file:
+            assert file.read(5) == b"%PDF-", name
 
 
 @test("export writes the four formats with every column in order, and refuses an ending it does not know")
