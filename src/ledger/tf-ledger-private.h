@@ -19,7 +19,7 @@
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION     8
+#define TF_LEDGER_VERSION     9
 #define TF_ID_HEX             32 /* digits of a UUID */
 #define TF_CID_HEX            64 /* digits of a content id or hash */
 
