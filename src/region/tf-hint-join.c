@@ -216,11 +216,30 @@ tidy (TfHintPieces *pieces, gboolean (*fits) (const TfHintPieces *, const TfHint
     }
 }
 
+/* Pairs of hills become pairs of what the hills now belong to. */
+static void
+renew_pairs (TfHintPieces *pieces)
+{
+  g_array_set_size (pieces->pairs, 0);
+  for (guint k = 0; k < pieces->touching->len; k++)
+    {
+      TfHintPair pair = g_array_index (pieces->touching, TfHintPair, k);
+      pair.a = tf_hint_root (pieces, pair.a);
+      pair.b = tf_hint_root (pieces, pair.b);
+      if (pair.a != pair.b)
+        g_array_append_val (pieces->pairs, pair);
+    }
+}
+
 void
 tf_hint_join (TfHintPieces *pieces)
 {
+  pieces->hills = g_array_copy (pieces->clusters);
+  pieces->touching = g_array_copy (pieces->pairs);
   join_by_score (pieces);
   tidy (pieces, leftover_fits);
+  if (tf_hint_part (pieces))
+    renew_pairs (pieces);
   tf_hint_partners (pieces);
   tidy (pieces, same_plage);
 }

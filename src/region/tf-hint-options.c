@@ -72,6 +72,12 @@ const TfOption tf_hint_options[] = {
   { "nest-small", TF_OPTION_NUMBER, "", 0.05, 0.0, 1.0, NULL,
     N_ ("a region smaller than this share of the other may be joined all the same"),
     AT (nest_small) },
+  /* parting */
+  { "part-gain", TF_OPTION_NUMBER, "", 0.5, 0.0, 10.0, NULL,
+    N_ ("two hills of a region stand for themselves when that saves this share of the way to the other sign"),
+    AT (part_gain) },
+  { "part-flux", TF_OPTION_NUMBER, "Mx", 5e20, 0.0, 1e24, NULL,
+    N_ ("least flux of each part"), AT (part_mx) },
   /* left-overs */
   { "single-weaker", TF_OPTION_NUMBER, "", 0.15, 0.0, 0.5, NULL,
     N_ ("share of the weaker sign below which a cluster is plage of one sign, offered as unipolar"),

@@ -314,6 +314,8 @@ tf_hint_pieces_free (TfHintPieces *pieces)
   g_array_unref (pieces->clusters);
   g_array_unref (pieces->faint);
   g_array_unref (pieces->pairs);
+  g_clear_pointer (&pieces->hills, g_array_unref);
+  g_clear_pointer (&pieces->touching, g_array_unref);
   g_free (pieces);
 }
 

@@ -51,6 +51,8 @@ typedef struct
   gint32 *nearest;  /* of each cell: the nearest piece, or -1 */
   float *distance;  /* Mm to it */
   GArray *clusters; /* TfHintCluster */
+  GArray *hills;    /* TfHintCluster: the same before any was joined */
+  GArray *touching; /* TfHintPair: of hills */
   GArray *faint;    /* TfHintCluster: hills that nowhere reach the high level */
   GArray *pairs;    /* TfHintPair */
 } TfHintPieces;
@@ -87,6 +89,10 @@ double tf_hint_length (double total_mx, const TfHintParams *params);
 double tf_hint_separation (const TfHintCluster *cluster, double radius_mm);
 /** tf_hint_centre: unit vector of the flux's centre. */
 void tf_hint_centre (const TfHintCluster *cluster, double unit[3]);
+
+/* tf-hint-part.c */
+/** tf_hint_part: small regions that were joined to a large one stand for themselves again; FALSE: there were none. */
+gboolean tf_hint_part (TfHintPieces *pieces);
 
 /* tf-hint-partner.c */
 /** tf_hint_partners: poles alone take their faint partners. */

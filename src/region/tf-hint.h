@@ -14,7 +14,7 @@
 
 G_BEGIN_DECLS
 
-#define TF_HINT_RULE "plain/3"
+#define TF_HINT_RULE "plain/4"
 
 /** TfHintParams: defaults, units, ranges and what each is for stand in tf_hint_options; no number of the rule is anywhere else. */
 typedef struct
@@ -47,6 +47,9 @@ typedef struct
   double nest_weaker;
   double nest_mx;
   double nest_small;
+  /* parting */
+  double part_gain;
+  double part_mx;
   /* left-overs */
   double single_weaker;
   double tidy_mm;

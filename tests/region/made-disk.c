@@ -374,15 +374,15 @@ score_source (MadeScore *score, const MadeDisk *disk, guint k, const GPtrArray *
     }
   for (guint s = 0; s < disk->sources->len && hint != NULL; s++)
     other = MAX (other, s != k ? inside[(gsize)s * hints->len + best] : 0.0);
-  if (hint != NULL && mine[best] >= HALF * source->flux && other >= JOINED * mine[best])
-    score->joined++;
-  else if (parts >= 2)
-    score->split++;
-  else
-    score->missed++;
-  g_test_message ("  not found: N%+.1f W%+.1f flux %.2e half length %.1f overlaps %u: %.2f of it in its best hint of %.2e, most "
-                  "of another there %.2e, parts %u",
-                  source->lat_deg, source->cmd_deg, source->flux, source->half_deg, source->overlaps,
+  gboolean joined = hint != NULL && mine[best] >= HALF * source->flux && other >= JOINED * mine[best];
+  gboolean split = !joined && parts >= 2;
+  score->joined += joined;
+  score->split += split;
+  score->missed += !joined && !split;
+  g_test_message ("  %s: N%+.1f W%+.1f flux %.2e half length %.1f overlaps %u: %.2f of it in its best hint of %.2e, most of another "
+                  "there %.2e, parts %u",
+                  joined ? "joined" : split ? "split" : "missed", source->lat_deg, source->cmd_deg, source->flux,
+                  source->half_deg, source->overlaps,
                   hint != NULL ? mine[best] / source->flux : 0.0, hint != NULL ? hint->measure.flux_unsigned_mx : 0.0, other,
                   parts);
 }

@@ -152,6 +152,54 @@ test_even (void)
   tf_check_near ("the other the larger", two / one, 1.0, 0.02);
 }
 
+/* Four hills on the equator that were joined to one region, @flux in units of 1e21 Mx; into how many is it parted? */
+static guint
+parts_of (const double lon[4], const double flux[4])
+{
+  TfHintParams params;
+  TfHintGrid grid = { .radius_mm = 695.7 };
+  TfHintPieces pieces = { .grid = &grid, .params = &params };
+  g_autoptr (GArray) clusters = g_array_new (FALSE, TRUE, sizeof (TfHintCluster));
+  g_autoptr (GArray) hills = g_array_new (FALSE, TRUE, sizeof (TfHintCluster));
+  tf_hint_params_init (&params);
+  for (guint k = 0; k < 4; k++)
+    {
+      TfHintCluster hill = { .into = (int)k };
+      guint sign = flux[k] < 0.0 ? 1 : 0;
+      hill.flux[sign] = fabs (flux[k]) * 1e21;
+      tf_sphere_unit (lon[k], 0.0, hill.place[sign]);
+      for (guint j = 0; j < 3; j++)
+        hill.place[sign][j] *= hill.flux[sign];
+      g_array_append_val (hills, hill);
+      hill.into = 0;
+      g_array_append_val (clusters, hill);
+    }
+  pieces.clusters = clusters;
+  pieces.hills = hills;
+  g_assert_true (tf_hint_part (&pieces) == (tf_hint_root (&pieces, 2) != 0));
+  g_assert_cmpuint (tf_hint_root (&pieces, 1), ==, 0);
+  g_assert_cmpuint (tf_hint_root (&pieces, 3), ==, tf_hint_root (&pieces, 2));
+  if (tf_hint_root (&pieces, 2) == 0)
+    return 1;
+  const TfHintCluster *small = &g_array_index (clusters, TfHintCluster, 2);
+  tf_check_near ("flux of the part", tf_hint_total (small) / (1e21 * (fabs (flux[2]) + fabs (flux[3]))), 1.0, 1e-12);
+  return 2;
+}
+
+/* A small bipole beside the pole of a large one stands for itself; the halves of a quadrupole do not, nor does one too faint. */
+static void
+test_parts (void)
+{
+  const double beside[] = { 0.0, 7.0, 9.0, 11.0 }, four[] = { 0.0, 4.0, 5.0, 9.0 };
+  const double small[] = { 10.0, -10.0, 1.0, -1.0 }, flipped[] = { -10.0, 10.0, -1.0, 1.0 }, even[] = { 5.0, -5.0, 5.0, -5.0 };
+  const double faint[] = { 10.0, -10.0, 0.2, -0.2 }, lopsided[] = { 10.0, -10.0, 1.0, -0.3 };
+  g_assert_cmpuint (parts_of (beside, small), ==, 2);
+  g_assert_cmpuint (parts_of (beside, flipped), ==, 2);
+  g_assert_cmpuint (parts_of (four, even), ==, 1);
+  g_assert_cmpuint (parts_of (beside, faint), ==, 1);
+  g_assert_cmpuint (parts_of (beside, lopsided), ==, 1);
+}
+
 static void
 test_maps (void)
 {
@@ -202,6 +250,7 @@ add_hint_built_tests (void)
   g_test_add_func ("/region/hint/a-leader-that-flips-is-told", test_flips);
   g_test_add_func ("/region/hint/a-pole-finds-its-faint-partner", test_partner);
   g_test_add_func ("/region/hint/the-larger-by-a-hair-does-not-decide", test_even);
+  g_test_add_func ("/region/hint/a-small-region-joined-to-a-large-one-is-parted-again", test_parts);
   g_test_add_func ("/region/hint/maps-are-refused-in-words", test_maps);
   g_test_add_func ("/region/hint/every-number-of-the-rule-is-an-option", test_options);
 }
