@@ -444,6 +444,6 @@ const TfMigration tf_ledger_migrations[] = {
   { 6, version_6 },
   { 7, version_7 },
   { 8, version_8 },
-    { 9, version_9 },
+  { 9, version_9 },
   { 0, NULL },
 };
