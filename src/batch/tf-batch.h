@@ -45,6 +45,7 @@ int tf_verb_hints (int argc, char **argv);
 int tf_verb_fill (int argc, char **argv);
 int tf_verb_gather (int argc, char **argv);
 int tf_verb_follow (int argc, char **argv);
+int tf_verb_bring (int argc, char **argv);
 int tf_verb_laws (int argc, char **argv);
 int tf_verb_export (int argc, char **argv);
 int tf_verb_check (int argc, char **argv);

@@ -4,6 +4,7 @@
 #include <math.h>
 
 #include "tf-export.h"
+#include "tf-ledger-outside.h"
 #include "tf-mount-wilson.h"
 
 /* The flat columns. A number that is not there is NaN, a text "". Yes/no and whole numbers come
@@ -115,6 +116,11 @@ NUMBER (get_class_delta,
         int_or_nan (tf_mount_wilson_delta (r->row->mw_class) >= 0, tf_mount_wilson_delta (r->row->mw_class)))
 NUMBER (get_unipolar, int_or_nan (r->row->is_hint, r->row->unipolar != 0))
 NUMBER (get_simulated, r->row->simulated != 0)
+#define O (r->row->outside)
+TEXT (get_source, O != NULL ? O->source : NULL)
+TEXT (get_licence, O != NULL ? O->licence : NULL)
+NUMBER (get_source_row, O != NULL ? O->place : (double)NAN)
+TEXT (get_nothing, NULL)
 #define C (r->row->complexity)
 NUMBER (get_schrijver, C.there ? C.r_mx : (double)NAN)
 NUMBER (get_gradient_length, C.there ? C.strong_gradient_length_mm : (double)NAN)
@@ -213,6 +219,11 @@ const TfColumn tf_columns[] = {
   AS_TEXT ("complexity_method", "meta.note;meta.software", "how complexity was worked out, with every option", get_complexity_method),
   AS_TEXT ("external_number", "meta.id.assoc", "number of the region in an official or other list",
            get_external),
+  AS_TEXT ("source", "meta.bib", "outside rows: where the table is from", get_source),
+  AS_TEXT ("licence", "meta.note", "outside rows: licence of the table", get_licence),
+  AS_INT ("source_row", "meta.record", "outside rows: line or row of the table", get_source_row),
+  AS_TEXT ("source_origin", "meta.code.status", "outside rows: origin as the table has it", get_nothing),
+  AS_TEXT ("source_mark", "meta.id", "outside rows: id of the mark as the table has it", get_nothing),
   { NULL },
 };
 /* clang-format on */

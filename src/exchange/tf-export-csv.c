@@ -60,7 +60,7 @@ put_row (GString *out, const TfExportRow *row)
           put_number (out, column, tf_column_number (column, row));
           continue;
         }
-      g_autofree char *text = column->text (row);
+      g_autofree char *text = tf_column_dup_text (column, row);
       put_text (out, text);
     }
   g_string_append (out, "\r\n");

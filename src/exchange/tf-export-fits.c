@@ -25,7 +25,7 @@ enum
 static char *
 dup_ascii_cell (const TfColumn *column, const TfExportRow *row)
 {
-  g_autofree char *text = column->text (row);
+  g_autofree char *text = tf_column_dup_text (column, row);
   char *ascii = strcmp (column->name, "class") == 0 ? tf_mount_wilson_dup_ascii (text)
                                                     : g_str_to_ascii (text, "C");
   for (char *p = ascii; *p != '\0'; p++)

@@ -14,7 +14,7 @@ put_cell (JsonBuilder *builder, const TfColumn *column, const TfExportRow *row)
 {
   if (column->type == TF_COLUMN_TEXT)
     {
-      g_autofree char *text = column->text (row);
+      g_autofree char *text = tf_column_dup_text (column, row);
       tf_json_string (builder, column->name, *text != '\0' ? text : NULL);
       return;
     }

@@ -51,7 +51,7 @@ static char *
 dup_cell (const TfColumn *column, const TfExportRow *row)
 {
   if (column->type == TF_COLUMN_TEXT)
-    return column->text (row);
+    return tf_column_dup_text (column, row);
   double value = tf_column_number (column, row);
   if (isnan (value))
     return g_strdup (column->type == TF_COLUMN_INT ? NULL_INT : "");

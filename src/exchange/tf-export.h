@@ -19,7 +19,11 @@ typedef enum
 {
   TF_EXCHANGE_ERROR_FORMAT, /* ending not known: names those that are */
   TF_EXCHANGE_ERROR_WRITE,
+  TF_EXCHANGE_ERROR_READ,   /* not there, or no table: says what it is and what to do */
 } TfExchangeError;
+
+/** tf_export_fail_read: "@name: @reason" as TF_EXCHANGE_ERROR_READ. */
+void tf_export_fail_read (GError **error, const char *name, const char *reason);
 
 typedef enum
 {

@@ -74,6 +74,19 @@ tf_mount_wilson_dup_ascii (const char *text)
 }
 
 char *
+tf_mount_wilson_dup_greek (const char *text)
+{
+  guint found = read_letters (text);
+  if (found == 0)
+    return g_strdup (text);
+  GString *greek = g_string_new (NULL);
+  for (guint k = 0; k < G_N_ELEMENTS (letters); k++)
+    if ((found & letters[k].flag) != 0)
+      g_string_append (greek, letters[k].letter);
+  return g_string_free (greek, FALSE);
+}
+
+char *
 tf_mount_wilson_dup_base (const char *text)
 {
   return join_names (read_letters (text) & ~(guint)DELTA);

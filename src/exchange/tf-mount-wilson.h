@@ -15,6 +15,8 @@ G_BEGIN_DECLS
 /** tf_mount_wilson_dup_ascii: "beta-gamma-delta"; text that is no class: transliterated; "" for
  * NULL or "". */
 char *tf_mount_wilson_dup_ascii (const char *text);
+/** tf_mount_wilson_dup_greek: "βγδ"; text that is no class as it is. */
+char *tf_mount_wilson_dup_greek (const char *text);
 /** tf_mount_wilson_dup_base: the class without delta: "alpha", "beta", "gamma", "beta-gamma",
  * or "". */
 char *tf_mount_wilson_dup_base (const char *text);

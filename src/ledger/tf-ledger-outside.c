@@ -44,6 +44,8 @@ tf_outside_row_free (TfOutsideRow *row)
   if (row == NULL)
     return;
   g_clear_pointer (&row->parsed, json_node_unref);
+  g_free (row->source);
+  g_free (row->licence);
   g_free (row->flat);
   g_free (row);
 }
@@ -306,13 +308,15 @@ tf_outside_gather (TfLedger *ledger, TfLedger *part, GError **error)
 /* -- as flat rows ------------------------------------------------------------------------------ */
 
 #define ROWS_SQL                                                                                   \
-  "SELECT id, outside, lower (hex (cid)), place, 1073741824 + id - ordinal + grp, region, "        \
-  "passage, time, hinted, flat, leading, leading_sure, " NUMBERS " FROM outside_row "              \
-  "WHERE ?1 = 0 OR id = ?1 ORDER BY id"
+  "SELECT o.id, o.outside, lower (hex (o.cid)), o.place, 1073741824 + o.id - o.ordinal + o.grp, "  \
+  "o.region, o.passage, o.time, o.hinted, o.flat, o.leading, o.leading_sure, " NUMBERS ", "        \
+  "CASE s.source WHEN '' THEN s.name ELSE s.source END, s.licence FROM outside_row o "             \
+  "JOIN outside s ON s.id = o.outside WHERE ?1 = 0 OR o.id = ?1 ORDER BY o.id"
 
 enum
 {
-  FIRST_NUMBER = 12
+  FIRST_NUMBER = 12,
+  AFTER_NUMBERS = FIRST_NUMBER + G_N_ELEMENTS (numbers)
 };
 
 static const TfPole no_pole = { .flux_mx = NAN,
@@ -377,6 +381,13 @@ dup_flat (JsonObject *flat, const char *name)
   return g_strdup (text != NULL ? text : "");
 }
 
+static char *
+dup_own_or (JsonObject *flat, const char *name, const char *otherwise)
+{
+  const char *text = tf_json_member_string (flat, name);
+  return g_strdup (text != NULL ? text : otherwise);
+}
+
 static TfOutsideRow *
 read_outside (sqlite3_stmt *query)
 {
@@ -386,10 +397,13 @@ read_outside (sqlite3_stmt *query)
   out->group = (guint32)sqlite3_column_int64 (query, 4);
   out->hinted = sqlite3_column_int (query, 8);
   out->flat = dup_text (query, 9);
+  JsonObject *flat = tf_outside_row_get_flat (out);
   out->leading_sure = (gint8)sqlite3_column_int (query, 11);
   out->leading_lat_deg = tf_column_double (query, FIRST_NUMBER);
   out->following_lat_deg = tf_column_double (query, FIRST_NUMBER + 1);
-  out->size = size_of (tf_json_member_string (tf_outside_row_get_flat (out), "size"));
+  out->source = dup_own_or (flat, "source", tf_column_text (query, AFTER_NUMBERS));
+  out->licence = dup_own_or (flat, "licence", tf_column_text (query, AFTER_NUMBERS + 1));
+  out->size = size_of (tf_json_member_string (flat, "size"));
   return out;
 }
 
@@ -422,12 +436,33 @@ read_row (sqlite3_stmt *query)
   return row;
 }
 
+/* Rows of one table with one passage text share the first one's key. */
+static guint32
+number_passage (GHashTable *passages, const TfRow *row)
+{
+  char *key = g_strdup_printf ("%" G_GINT64_FORMAT "\n%s", row->outside->table, row->passage);
+  guint32 first = GPOINTER_TO_UINT (g_hash_table_lookup (passages, key));
+  if (first == 0)
+    {
+      first = OUTSIDE_CLUSTER + (guint32)row->mark;
+      g_hash_table_insert (passages, key, GUINT_TO_POINTER (first));
+    }
+  else
+    g_free (key);
+  return first;
+}
+
 gboolean
 tf_outside_read_rows (TfLedger *ledger, gint64 key, GPtrArray *rows, GError **error)
 {
   g_autoptr (sqlite3_stmt) query = tf_query (ledger, error, ROWS_SQL, "i", key);
   int more = -1;
+  g_autoptr (GHashTable) passages = g_hash_table_new_full (g_str_hash, g_str_equal, g_free, NULL);
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
-    g_ptr_array_add (rows, read_row (query));
+    {
+      TfRow *row = read_row (query);
+      row->outside->passage = number_passage (passages, row);
+      g_ptr_array_add (rows, row);
+    }
   return more == 0;
 }

@@ -51,10 +51,12 @@ typedef struct _TfOutsideRow
 {
   gint64 table;       /* local key */
   guint32 group;      /* cluster of its region, apart from all others of the ledger */
+  guint32 passage;    /* likewise of its passage */
   guint place;
   double leading_lat_deg, following_lat_deg; /* NaN: not told; there without polarities, too */
   gint8 leading_sure; /* 1, 0, -1 the source does not say */
   gint8 size;         /* 0 region, 1 ephemeral, -1 unknown */
+  char *source, *licence; /* of the row, when it was outside before; else of its table */
   gboolean hinted;    /* the source calls it a hint */
   char *flat;
   JsonNode *parsed; /* of tf_outside_row_get_flat() */

@@ -10,6 +10,8 @@
 gboolean
 tf_study_has_floor (const TfRow *row, double gauss)
 {
+  if (row->outside != NULL)
+    return TRUE; /* its floor is the source's affair */
   return row->measure.floor_kind == TF_FLOOR_EVEN
          && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
 }
@@ -69,6 +71,8 @@ tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GE
   for (guint k = 0; rows != NULL && floor_gauss > 0 && k < rows->len; k++)
     {
       TfRow *row = g_ptr_array_index (rows, k);
+      if (row->outside != NULL)
+        continue;
       TfMeasureParams params;
       TfMeasure even = { 0 };
       g_autofree char *method = tf_measure_dup_even_method (row->method, floor_gauss, &params);

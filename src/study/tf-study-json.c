@@ -86,6 +86,7 @@ build_sample (JsonBuilder *builder, const TfFindings *findings, const TfStudy *s
   tf_json_int (builder, "passages", tf_sample_count_passages (findings->sample));
   tf_json_int (builder, "marks", findings->n_marks);
   tf_json_int (builder, "hints", findings->n_hints);
+  tf_json_int (builder, "outside", findings->n_outside);
   build_counts (builder, "left_out", findings->left_out);
   build_counts (builder, "passed_without", findings->passed_without);
   build_counts (builder, "cannot_say", findings->cannot_say);

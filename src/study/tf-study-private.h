@@ -28,6 +28,8 @@ gboolean
 tf_study_unscaled (const TfFindings *findings, const TfStudy *study, const TfStudyRows *rows);
 /** tf_study_dup_divides: the moved divides of the study under its options. */
 TfDivides *tf_study_dup_divides (const TfStudy *study);
+/** tf_study_outside_row: the rest of tf_study_row() for a row that came in a table. */
+void tf_study_outside_row (const TfRow *row, TfSampleRow *out);
 /** tf_study_judge: (transfer full): a verdict for each row, as if every minimum had come @later_s
  * seconds later. */
 TfVerdict *tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s);
@@ -53,7 +55,8 @@ TfFindings *tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, Tf
                                double floor, gboolean what_if);
 /** tf_study_count: one more of @key. */
 void tf_study_count (GHashTable *counts, const char *key);
-/** tf_study_has_floor: whether a row was measured with the even floor @gauss (within 0.5 %). */
+/** tf_study_has_floor: whether a row was measured with the even floor @gauss (within 0.5 %), or came
+ * in a table. */
 gboolean tf_study_has_floor (const TfRow *row, double gauss);
 
 /* Members of the `laws` document. */

@@ -82,6 +82,11 @@ void
 tf_study_row (const TfRow *row, TfSampleRow *out)
 {
   tf_study_measure_row (&row->measure, out);
+  if (row->outside != NULL)
+    {
+      tf_study_outside_row (row, out);
+      return;
+    }
   out->origin = origin_of (row);
   guint32 alone = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->mark;
   guint32 region = row->is_hint ? alone : (guint32)row->region_key;
@@ -106,9 +111,9 @@ tf_study_point (const TfPoint *point, TfSampleRow *out)
   out->leading_sure = point->leading_sure;
   out->witnesses_differ = point->witnesses_differ;
   out->straddles = point->straddles;
-  out->origin = point->hint ? TF_ORIGIN_HINT : TF_ORIGIN_KEPT;
+  out->origin = point->outside ? TF_ORIGIN_OUTSIDE : point->hint ? TF_ORIGIN_HINT : TF_ORIGIN_KEPT;
   out->region = point->hint ? HINT_CLUSTER + (guint32)point->mark : point->region;
-  out->passage = point->hint ? out->region : (guint32)point->mark;
+  out->passage = point->hint || point->outside ? out->region : (guint32)point->mark;
 }
 
 TfVerdict

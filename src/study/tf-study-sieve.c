@@ -4,6 +4,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-ledger-outside.h"
 #include "tf-study-private.h"
 
 /* Which rows a study takes. Mark conditions (kind, CMD, mu) first, then one pick a passage, then
@@ -64,6 +65,8 @@ find_row_reason (const TfSieveParams *p, const TfRow *row)
     return "hint";
   if (!p->with_models && g_strcmp0 (row->kind, "model map") == 0)
     return "model-map";
+  if (row->outside != NULL && row->outside->hinted)
+    return "outside-hint";
   return row->is_hint && row->unipolar ? "unipolar-hint" : NULL;
 }
 

@@ -489,7 +489,8 @@ fill_from_ledger (TfWhatIf *row, const Variant *v, const Context *context)
 {
   double floor = context->findings->even_floor_gauss * v->floor_factor;
   const TfRowQuery query
-      = { .marks = TRUE, .hints = v->study.sieve.with_hints, .no_outlines = floor <= 0.0 };
+      = { .marks = TRUE, .hints = v->study.sieve.with_hints, .outside = TRUE,
+          .no_outlines = floor <= 0.0 };
   g_autoptr (GPtrArray) found = tf_study_rows (context->ledger, &query, floor, NULL);
   row->n_missing
       = found != NULL && floor > 0.0 && !v->with_hints ? count_unmeasured (found, floor) : 0;

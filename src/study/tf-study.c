@@ -161,16 +161,19 @@ count_marks (TfFindings *findings, const TfStudyRows *rows)
       g_hash_table_add (picked, GUINT_TO_POINTER (pick->passage));
       if (row == NULL)
         continue;
+      findings->simulated += row->simulated != FALSE;
+      if (row->outside != NULL)
+        continue;
       findings->marks[k] = row->is_hint ? -row->mark : row->mark;
       findings->n_other_floor += !tf_study_has_floor (row, findings->even_floor_gauss);
-      findings->simulated += row->simulated != FALSE;
     }
   for (guint k = 0; k < tf_sample_get_n (findings->every); k++)
     {
       const TfSampleRow *mark = tf_sample_get (findings->every, k);
       if (!g_hash_table_contains (picked, GUINT_TO_POINTER (mark->passage)))
         continue;
-      findings->n_marks += mark->origin != TF_ORIGIN_HINT;
+      findings->n_outside += mark->origin == TF_ORIGIN_OUTSIDE;
+      findings->n_marks += mark->origin != TF_ORIGIN_HINT && mark->origin != TF_ORIGIN_OUTSIDE;
       findings->n_hints += mark->origin == TF_ORIGIN_HINT;
     }
 }
@@ -320,7 +323,7 @@ tf_study_sample_rows (const GPtrArray *rows)
 GPtrArray *
 tf_study_read_rows (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
 {
-  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints };
+  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints, .outside = TRUE };
   g_autoptr (GPtrArray) found = tf_study_rows (ledger, &query, floor, error);
   if (found == NULL || complain_empty (study, found, ledger, error))
     return NULL;

@@ -114,8 +114,8 @@ typedef struct
   GHashTable *changing; /* passages in which too few marks agree */
   TfSample *every;     /* every mark that passes the mark conditions, picked or not */
   TfSamplingTally sampling;
-  gint64 *marks;          /* local key of each pick's mark; hints negative */
-  guint n_marks, n_hints; /* of the passages that were picked */
+  gint64 *marks;          /* local key of each pick's mark; hints negative, outside rows 0 */
+  guint n_marks, n_hints, n_outside; /* of the passages that were picked */
   GHashTable *left_out;   /* why the sieve left a row out -> GUINT_TO_POINTER (count) */
   /* condition -> count of rows taken though they lack what it asks about */
   GHashTable *passed_without;

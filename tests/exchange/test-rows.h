@@ -5,3 +5,5 @@
 
 /** add_row_tests: @demo_folder: data-demo/frames. */
 void add_row_tests (const char *demo_folder);
+
+void add_bring_tests (void);
