@@ -67,6 +67,21 @@ gboolean tf_batch_parse (GOptionContext *context, int *argc, char ***argv);
 /** tf_batch_usage: complains that the words are off, names the verb's help; returns TF_EXIT_CALL. */
 int tf_batch_usage (const char *verb, const char *what);
 
+/** TfLawsWords: which study laws runs, and what is kept of it. */
+typedef struct
+{
+  char *study, *name, *person, *save_study, *keep_edition, *against, *figures;
+  gboolean keep_study;
+} TfLawsWords;
+void tf_laws_words_clear (TfLawsWords *words);
+G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfLawsWords, tf_laws_words_clear)
+void tf_batch_laws_add_words (GOptionContext *context, TfLawsWords *words);
+/** tf_batch_laws_study: the study that --study names among the words, else the default one. */
+TfStudy *tf_batch_laws_study (int argc, char **argv, gboolean *from_file, GError **error);
+/** tf_batch_laws_keep: saves and keeps what was asked for; compares with an edition. */
+int tf_batch_laws_keep (TfLedger *ledger, TfStudy *study, const TfFindings *findings, gboolean json,
+                        const TfLawsWords *words);
+
 void tf_batch_print (const char *text);
 /** tf_batch_say: one line on standard error. */
 void tf_batch_say (const char *text);

@@ -19,22 +19,9 @@ measure_floors (TfLedger *ledger, gboolean with_hints, GError **error)
          && tf_intake_measure_even (ledger, TF_WHAT_IF_HIGHER * floor, &query, work, error);
 }
 
-int
-tf_verb_laws (int argc, char **argv)
+static void
+add_groups (GOptionContext *context, TfStudy *study)
 {
-  gboolean json = FALSE, with_hints = FALSE, floors = FALSE;
-  g_autofree char *figures = NULL;
-  g_autoptr (TfStudy) study = tf_study_new_default ();
-  const GOptionEntry entries[] = {
-    { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
-    { "with-hints", 0, 0, G_OPTION_ARG_NONE, &with_hints, N_ ("take hints in, counted apart"), NULL },
-    { "figures", 0, 0, G_OPTION_ARG_FILENAME, &figures, N_ ("write the charts into this folder as PDF"), "DIR" },
-    { "measure-floors", 0, 0, G_OPTION_ARG_NONE, &floors,
-      N_ ("measure with the floor a fifth lower and higher, too, for the what-ifs (opens the frames)"), NULL },
-    { NULL },
-  };
-  GOptionContext *context = tf_batch_context ("laws");
-  g_option_context_add_main_entries (context, entries, GETTEXT_PACKAGE);
   g_option_context_add_group (context, tf_options_new_group (tf_sieve_options, &study->sieve, "sieve", N_ ("the sieve")));
   g_option_context_add_group (context, tf_options_new_group (tf_sampling_options, &study->sampling, "sampling", N_ ("the sampling rule")));
   g_option_context_add_group (context, tf_options_new_group (tf_divide_options, &study->divide, "cycle", N_ ("the divides")));
@@ -43,29 +30,83 @@ tf_verb_laws (int argc, char **argv)
   g_option_context_add_group (context, tf_options_new_group (tf_joy_options, &study->joy, "joy", N_ ("Joy's law")));
   g_option_context_add_group (context, tf_options_new_group (tf_drift_options, &study->drift, "drift", N_ ("the drift of latitude")));
   g_option_context_add_group (context, tf_options_new_group (tf_emergence_options, &study->emergence, "emergence", N_ ("ages since emergence")));
-  if (!tf_batch_parse (context, &argc, &argv))
-    return TF_EXIT_CALL;
-  if (argc != 2)
-    return tf_batch_usage ("laws", _ ("Name one ledger."));
-  study->sieve.with_hints = with_hints;
+}
 
-  g_autoptr (GError) error = NULL;
-  g_autoptr (TfLedger) ledger = tf_batch_open_measured (argv[1], with_hints, &error);
-  gboolean measured = ledger != NULL && (!floors || measure_floors (ledger, with_hints, &error));
-  gboolean ready = measured && tf_study_read_divides (study, ledger, &error);
-  g_autoptr (TfFindings) findings = ready ? tf_study_run (study, ledger, &error) : NULL;
-  if (findings == NULL || (figures != NULL && !tf_batch_write_figures (findings, study, figures, &error)))
-    {
-      tf_batch_say_error (error);
-      return TF_EXIT_NOTHING;
-    }
+static int
+fail (const GError *error)
+{
+  tf_batch_say_error (error);
+  return TF_EXIT_NOTHING;
+}
+
+static void
+print (const TfFindings *findings, const TfStudy *study, gboolean json)
+{
   if (!json)
     {
       tf_batch_print_findings (findings, study);
-      return TF_EXIT_DONE;
+      return;
     }
   g_autoptr (JsonBuilder) builder = json_builder_new ();
   tf_findings_build_json (findings, study, builder);
   tf_batch_print_json (builder);
-  return TF_EXIT_DONE;
+}
+
+/* A study of a file brings its own divides; others take those moved in the ledger. */
+static int
+laws (const char *path, TfStudy *study, gboolean from_file, gboolean floors, gboolean json,
+      const TfLawsWords *words)
+{
+  g_autoptr (GError) error = NULL;
+  gboolean hints = study->sieve.with_hints;
+  g_autoptr (TfLedger) ledger = tf_batch_open_measured (path, hints, &error);
+  if (ledger == NULL || (floors && !measure_floors (ledger, hints, &error))
+      || (!from_file && !tf_study_read_divides (study, ledger, &error)))
+    return fail (error);
+  g_autoptr (TfFindings) findings = tf_study_run (study, ledger, &error);
+  if (findings == NULL)
+    return fail (error);
+  study->even_floor_gauss = findings->even_floor_gauss;
+  if (words->figures != NULL && !tf_batch_write_figures (findings, study, words->figures, &error))
+    return fail (error);
+  if (words->against == NULL)
+    print (findings, study, json);
+  return tf_batch_laws_keep (ledger, study, findings, json, words);
+}
+
+int
+tf_verb_laws (int argc, char **argv)
+{
+  gboolean json = FALSE, with_hints = FALSE, floors = FALSE, from_file = FALSE;
+  g_auto (TfLawsWords) words = { 0 };
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfStudy) study = tf_batch_laws_study (argc, argv, &from_file, &error);
+  if (study == NULL)
+    return fail (error);
+  const GOptionEntry entries[] = {
+    { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
+    { "with-hints", 0, 0, G_OPTION_ARG_NONE, &with_hints, N_ ("take hints in, counted apart"), NULL },
+    { "figures", 0, 0, G_OPTION_ARG_FILENAME, &words.figures, N_ ("write the charts into this folder as PDF"), "DIR" },
+    { "measure-floors", 0, 0, G_OPTION_ARG_NONE, &floors,
+      N_ ("measure with the floor a fifth lower and higher, too, for the what-ifs (opens the frames)"), NULL },
+    { NULL },
+  };
+  GOptionContext *context = tf_batch_context ("laws");
+  g_option_context_add_main_entries (context, entries, GETTEXT_PACKAGE);
+  tf_batch_laws_add_words (context, &words);
+  add_groups (context, study);
+  if (!tf_batch_parse (context, &argc, &argv))
+    return TF_EXIT_CALL;
+  if (argc != 2)
+    return tf_batch_usage ("laws", _ ("Name one ledger."));
+  if ((words.keep_study || words.keep_edition != NULL) && words.person == NULL)
+    return tf_batch_usage ("laws", _ ("Keeping a study or an edition is a person's deed: say whose with --person."));
+  if (with_hints)
+    study->sieve.with_hints = TRUE;
+  if (words.name != NULL)
+    {
+      g_free (study->name);
+      study->name = g_strdup (words.name);
+    }
+  return laws (argv[1], study, from_file, floors, json, &words);
 }

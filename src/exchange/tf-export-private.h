@@ -38,7 +38,3 @@ gboolean tf_export_json (const char *path, const GArray *rows, const GArray *fac
 /** tf_export_save: @text into @path, whole or not at all. */
 gboolean tf_export_save (const char *path, const char *text, gssize length, GError **error);
 void tf_export_set_error (GError **error, const char *path, const char *reason);
-/** tf_column_number: in the column's unit; NaN missing. */
-double tf_column_number (const TfColumn *column, const TfExportRow *row);
-/** tf_column_dup_text: of a text column; "" missing. */
-char *tf_column_dup_text (const TfColumn *column, const TfExportRow *row);

@@ -6,8 +6,6 @@
 #include <string.h>
 
 #include "tf-export-private.h"
-#include "tf-json.h"
-#include "tf-ledger-outside.h"
 
 G_DEFINE_QUARK (tf - exchange - error - quark, tf_exchange_error)
 
@@ -35,38 +33,6 @@ tf_export_save (const char *path, const char *text, gssize length, GError **erro
     return TRUE;
   tf_export_set_error (error, path, reason->message);
   return FALSE;
-}
-
-/* Of a row that came in a table, what is judged or says which row it is is worked out here; all
- * else stands as it was brought. */
-static JsonObject *
-find_flat (const TfColumn *column, const TfExportRow *row)
-{
-  static const char *const here[]
-      = { "region", "passage", "mark",        "origin",     "time",        "polarity_tilt_deg",
-          "cycle",  "cycle_sure", "hale",     "hale_reason", "class_base", "class_delta",
-          "source", "licence", "source_row", NULL };
-  if (row->row->outside == NULL || g_strv_contains (here, column->name))
-    return NULL;
-  return tf_outside_row_get_flat (row->row->outside);
-}
-
-double
-tf_column_number (const TfColumn *column, const TfExportRow *row)
-{
-  JsonObject *flat = find_flat (column, row);
-  double value = flat != NULL ? tf_json_member_number (flat, column->name) : column->number (row);
-  return value * column->factor;
-}
-
-char *
-tf_column_dup_text (const TfColumn *column, const TfExportRow *row)
-{
-  JsonObject *flat = find_flat (column, row);
-  if (flat == NULL)
-    return column->text (row);
-  const char *text = tf_json_member_string (flat, column->name);
-  return g_strdup (text != NULL ? text : "");
 }
 
 GArray *

@@ -9,6 +9,7 @@
 
 #include <glib.h>
 
+#include "tf-columns.h"
 #include "tf-study.h"
 
 G_BEGIN_DECLS
@@ -24,33 +25,6 @@ typedef enum
 
 /** tf_export_fail_read: "@name: @reason" as TF_EXCHANGE_ERROR_READ. */
 void tf_export_fail_read (GError **error, const char *name, const char *reason);
-
-typedef enum
-{
-  TF_COLUMN_TEXT,
-  TF_COLUMN_NUMBER,
-  TF_COLUMN_INT, /* missing value allowed */
-  TF_COLUMN_BOOL,
-} TfColumnType;
-
-/** TfExportRow: a ledger row with what is judged on reading. */
-typedef struct
-{
-  const TfRow *row;
-  TfSampleRow sample;
-  TfVerdict verdict;
-} TfExportRow;
-
-typedef struct
-{
-  const char *name;
-  TfColumnType type;
-  const char *fits_unit, *vo_unit, *ucd, *description; /* units "" where none */
-  double factor;                                       /* value in the unit = number * factor; 1 */
-  double (*number) (const TfExportRow *row);           /* NUMBER, INT, BOOL: NaN missing */
-  char *(*text) (const TfExportRow *row);              /* TEXT: (transfer full) "" missing */
-} TfColumn;
-extern const TfColumn tf_columns[]; /* ends with name NULL; order and names as 6-commands */
 
 /** tf_export_rows: (element-type TfExportRow): marks (and hints) judged under the study. @rows
  * keeps the ledger rows alive. */

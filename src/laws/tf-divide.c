@@ -178,6 +178,16 @@ tf_divides_get_params (const TfDivides *divides)
   return &divides->params;
 }
 
+guint
+tf_divides_get_moved (const TfDivides *divides, int cycle, int hemisphere, const double **times,
+                      const double **lats)
+{
+  const Moved *moved = find_moved (divides, cycle, hemisphere < 0 ? -1 : 1);
+  *times = moved != NULL ? moved->times : NULL;
+  *lats = moved != NULL ? moved->lats : NULL;
+  return moved != NULL ? moved->n : 0;
+}
+
 gboolean
 tf_divides_is_moved (const TfDivides *divides, int cycle, int hemisphere)
 {

@@ -49,6 +49,10 @@ TfDivides *tf_divides_with_params (const TfDivides *divides, const TfDivideParam
 TfDivides *tf_divides_ref (TfDivides *divides);
 void tf_divides_unref (TfDivides *divides);
 const TfDivideParams *tf_divides_get_params (const TfDivides *divides);
+/** tf_divides_get_moved: points of a moved divide: times (s of TT) and |lat|, borrowed; 0 when it is
+ * computed. */
+guint tf_divides_get_moved (const TfDivides *divides, int cycle, int hemisphere,
+                            const double **times, const double **lats);
 gboolean tf_divides_is_moved (const TfDivides *divides, int cycle, int hemisphere);
 /** tf_divides_latitude: |lat| of the divide about the minimum beginning @cycle; NaN where it does
  * not act. */

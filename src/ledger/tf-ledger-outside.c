@@ -309,15 +309,9 @@ tf_outside_gather (TfLedger *ledger, TfLedger *part, GError **error)
 
 #define ROWS_SQL                                                                                   \
   "SELECT o.id, o.outside, lower (hex (o.cid)), o.place, 1073741824 + o.id - o.ordinal + o.grp, "  \
-  "o.region, o.passage, o.time, o.hinted, o.flat, o.leading, o.leading_sure, " NUMBERS ", "        \
+  "o.region, o.passage, o.time, o.flat, "                                                          \
   "CASE s.source WHEN '' THEN s.name ELSE s.source END, s.licence FROM outside_row o "             \
   "JOIN outside s ON s.id = o.outside WHERE ?1 = 0 OR o.id = ?1 ORDER BY o.id"
-
-enum
-{
-  FIRST_NUMBER = 12,
-  AFTER_NUMBERS = FIRST_NUMBER + G_N_ELEMENTS (numbers)
-};
 
 static const TfPole no_pole = { .flux_mx = NAN,
                                 .flux_sigma_mx = NAN,
@@ -330,48 +324,70 @@ static const TfPole no_pole = { .flux_mx = NAN,
                                 .rms_radius_deg = NAN,
                                 .magnetic_area_msh = NAN };
 
-/* As far as a table goes: poles have places alone, and those only where polarities are told. */
-static void
-read_measure (TfMeasure *m, const TfOutsideRow *row, const char *floor_kind, sqlite3_stmt *query)
-{
-  *m = (TfMeasure){ .positive = no_pole,
-                    .negative = no_pole,
-                    .noise_gauss = NAN,
-                    .noise_flux_mx = NAN,
-                    .scale = NAN,
-                    .witnesses = { TF_WITNESS_ABSENT, TF_WITNESS_ABSENT, TF_WITNESS_ABSENT },
-                    .tilt_terms = { NAN, NAN, NAN, NAN },
-                    .separation_noise_deg = NAN,
-                    .separation_mm = NAN,
-                    .axial_dipole_sigma_gauss = NAN,
-                    .axial_dipole_poles_gauss = NAN };
-  m->time = (TfTime){ tf_column_double (query, 7) };
-  m->leading_polarity = sqlite3_column_int (query, 10);
-  m->leading_sure = row->leading_sure == 1;
-  double *to[] = { &m->lat_deg,           &m->carrington_lon_deg,   &m->stonyhurst_lon_deg,
-                   &m->cmd_deg,           &m->mu,                   &m->axis_bearing_deg,
-                   &m->axis_tilt_deg,     &m->tilt_terms.total,     &m->separation_deg,
-                   &m->separation_sigma_deg, &m->compactness,       &m->flux_unsigned_mx,
-                   &m->imbalance,         &m->axial_dipole_gauss,   &m->floor_gauss };
-  G_STATIC_ASSERT (G_N_ELEMENTS (to) + 2 == G_N_ELEMENTS (numbers));
-  for (guint k = 0; k < G_N_ELEMENTS (to); k++)
-    *to[k] = tf_column_double (query, FIRST_NUMBER + 2 + (int)k);
-  m->floor_kind = g_strcmp0 (floor_kind, "even") == 0 ? TF_FLOOR_EVEN : TF_FLOOR_LOCAL;
-  m->ephemeral = row->size == 1;
-  TfPole *lead = m->leading_polarity > 0 ? &m->positive : &m->negative;
-  TfPole *follow = m->leading_polarity > 0 ? &m->negative : &m->positive;
-  if (m->leading_polarity == 0)
-    return;
-  lead->lat_deg = row->leading_lat_deg;
-  follow->lat_deg = row->following_lat_deg;
-}
-
 static gint8
 size_of (const char *text)
 {
   if (g_strcmp0 (text, "ephemeral") == 0)
     return 1;
   return g_strcmp0 (text, "region") == 0 ? 0 : -1;
+}
+
+static int
+sign_of (double value)
+{
+  return value > 0 ? 1 : value < 0 ? -1 : 0;
+}
+
+/* As far as a table goes: poles have places alone, and those only where polarities are told. */
+static void
+read_measure (TfMeasure *m, const TfOutsideRow *row, JsonObject *flat)
+{
+  const struct
+  {
+    const char *name;
+    double *to;
+  } numbers_of[] = {
+    { "lat_deg", &m->lat_deg },
+    { "carrington_lon_deg", &m->carrington_lon_deg },
+    { "stonyhurst_lon_deg", &m->stonyhurst_lon_deg },
+    { "cmd_deg", &m->cmd_deg },
+    { "mu", &m->mu },
+    { "axis_bearing_deg", &m->axis_bearing_deg },
+    { "axis_tilt_deg", &m->axis_tilt_deg },
+    { "tilt_sigma_deg", &m->tilt_terms.total },
+    { "separation_deg", &m->separation_deg },
+    { "separation_sigma_deg", &m->separation_sigma_deg },
+    { "compactness", &m->compactness },
+    { "flux_unsigned_mx", &m->flux_unsigned_mx },
+    { "imbalance", &m->imbalance },
+    { "axial_dipole_gauss", &m->axial_dipole_gauss },
+    { "axial_dipole_sigma_gauss", &m->axial_dipole_sigma_gauss },
+    { "floor_gauss", &m->floor_gauss },
+    { "scale", &m->scale },
+  };
+  *m = (TfMeasure){ .positive = no_pole,
+                    .negative = no_pole,
+                    .noise_gauss = NAN,
+                    .noise_flux_mx = NAN,
+                    .witnesses = { TF_WITNESS_ABSENT, TF_WITNESS_ABSENT, TF_WITNESS_ABSENT },
+                    .tilt_terms = { NAN, NAN, NAN, NAN },
+                    .separation_noise_deg = NAN,
+                    .separation_mm = NAN,
+                    .axial_dipole_poles_gauss = NAN };
+  for (guint k = 0; k < G_N_ELEMENTS (numbers_of); k++)
+    *numbers_of[k].to = tf_json_member_number (flat, numbers_of[k].name);
+  m->leading_polarity = sign_of (tf_json_member_number (flat, "leading_polarity"));
+  m->leading_sure = row->leading_sure == 1;
+  m->ephemeral = row->size == 1;
+  m->floor_kind = g_strcmp0 (tf_json_member_string (flat, "floor_kind"), "even") == 0
+                      ? TF_FLOOR_EVEN
+                      : TF_FLOOR_LOCAL;
+  TfPole *lead = m->leading_polarity > 0 ? &m->positive : &m->negative;
+  TfPole *follow = m->leading_polarity > 0 ? &m->negative : &m->positive;
+  if (m->leading_polarity == 0)
+    return;
+  lead->lat_deg = row->leading_lat_deg;
+  follow->lat_deg = row->following_lat_deg;
 }
 
 static char *
@@ -381,43 +397,33 @@ dup_flat (JsonObject *flat, const char *name)
   return g_strdup (text != NULL ? text : "");
 }
 
-static char *
-dup_own_or (JsonObject *flat, const char *name, const char *otherwise)
-{
-  const char *text = tf_json_member_string (flat, name);
-  return g_strdup (text != NULL ? text : otherwise);
-}
-
 static TfOutsideRow *
-read_outside (sqlite3_stmt *query)
+outside_new (char *flat_text)
 {
   TfOutsideRow *out = g_new0 (TfOutsideRow, 1);
-  out->table = sqlite3_column_int64 (query, 1);
-  out->place = (guint)sqlite3_column_int (query, 3);
-  out->group = (guint32)sqlite3_column_int64 (query, 4);
-  out->hinted = sqlite3_column_int (query, 8);
-  out->flat = dup_text (query, 9);
+  out->flat = flat_text;
   JsonObject *flat = tf_outside_row_get_flat (out);
-  out->leading_sure = (gint8)sqlite3_column_int (query, 11);
-  out->leading_lat_deg = tf_column_double (query, FIRST_NUMBER);
-  out->following_lat_deg = tf_column_double (query, FIRST_NUMBER + 1);
-  out->source = dup_own_or (flat, "source", tf_column_text (query, AFTER_NUMBERS));
-  out->licence = dup_own_or (flat, "licence", tf_column_text (query, AFTER_NUMBERS + 1));
+  double sure = tf_json_member_number (flat, "leading_sure");
+  out->leading_lat_deg = tf_json_member_number (flat, "leading_lat_deg");
+  out->following_lat_deg = tf_json_member_number (flat, "following_lat_deg");
+  out->leading_sure = isnan (sure) ? -1 : sure > 0;
+  out->hinted = g_strcmp0 (tf_json_member_string (flat, "source_origin"), "hint") == 0;
   out->size = size_of (tf_json_member_string (flat, "size"));
+  out->source = dup_flat (flat, "source");
+  out->licence = dup_flat (flat, "licence");
   return out;
 }
 
-static TfRow *
-read_row (sqlite3_stmt *query)
+TfRow *
+tf_row_new_flat (char *flat_text, TfTime time)
 {
   TfRow *row = g_new0 (TfRow, 1);
-  row->outside = read_outside (query);
+  row->outside = outside_new (flat_text);
   JsonObject *flat = tf_outside_row_get_flat (row->outside);
-  row->mark = sqlite3_column_int64 (query, 0);
-  row->mark_id = dup_text (query, 2);
-  row->region = dup_text (query, 5);
-  row->passage = dup_text (query, 6);
   row->origin = "outside";
+  row->mark_id = dup_flat (flat, "mark");
+  row->region = dup_flat (flat, "region");
+  row->passage = dup_flat (flat, "passage");
   row->note = g_strdup ("");
   row->label = dup_flat (flat, "label");
   row->mw_class = dup_flat (flat, "class");
@@ -432,7 +438,35 @@ read_row (sqlite3_stmt *query)
   const char *kind = tf_json_member_string (flat, "kind");
   row->kind = kind != NULL ? tf_kind_name (tf_kind_from_name (kind)) : "";
   row->simulated = tf_json_member_number (flat, "simulated") > 0;
-  read_measure (&row->measure, row->outside, tf_json_member_string (flat, "floor_kind"), query);
+  row->unipolar = tf_json_member_number (flat, "unipolar") > 0;
+  read_measure (&row->measure, row->outside, flat);
+  row->measure.time = time;
+  return row;
+}
+
+static void
+take_text (char **to, char *text)
+{
+  g_free (*to);
+  *to = text;
+}
+
+static TfRow *
+read_row (sqlite3_stmt *query)
+{
+  TfRow *row = tf_row_new_flat (dup_text (query, 8), (TfTime){ tf_column_double (query, 7) });
+  TfOutsideRow *out = row->outside;
+  row->mark = sqlite3_column_int64 (query, 0);
+  out->table = sqlite3_column_int64 (query, 1);
+  take_text (&row->mark_id, dup_text (query, 2));
+  out->place = (guint)sqlite3_column_int (query, 3);
+  out->group = (guint32)sqlite3_column_int64 (query, 4);
+  take_text (&row->region, dup_text (query, 5));
+  take_text (&row->passage, dup_text (query, 6));
+  if (*out->source == '\0')
+    take_text (&out->source, dup_text (query, 9));
+  if (*out->licence == '\0')
+    take_text (&out->licence, dup_text (query, 10));
   return row;
 }
 

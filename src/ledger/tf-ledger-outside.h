@@ -65,6 +65,10 @@ void tf_outside_row_free (TfOutsideRow *row);
 /** tf_outside_row_get_flat: the columns; never NULL. Borrowed. */
 JsonObject *tf_outside_row_get_flat (TfOutsideRow *row);
 
+/** tf_row_new_flat: a row of flat columns; its texts and measure as far as they go, origin "outside",
+ * no group. @flat: JSON object, taken. */
+TfRow *tf_row_new_flat (char *flat, TfTime time);
+
 /** tf_ledger_outside_cid: the id that a table has or will have. (transfer full) */
 char *tf_ledger_outside_cid (const char *checksum, const char *columns, const char *linking);
 /** tf_ledger_find_outside: local key of a table of that id, or of that file name (the newest);

@@ -5,6 +5,7 @@
 #include <string.h>
 
 #include "tf-ledger-outside.h"
+#include "tf-sieve.h"
 #include "tf-study-private.h"
 
 /* Which rows a study takes. Mark conditions (kind, CMD, mu) first, then one pick a passage, then
@@ -92,10 +93,38 @@ settle (const char *reason, const Condition *conditions, guint n, TfFindings *fi
   return reason == NULL;
 }
 
+/* Conditions beyond the sieve's options, of those the first that @s does not meet; what it lacks is
+ * counted. They read the row of the mark that stands for it. */
+static const char *
+ask_more (const GPtrArray *more, const TfStudy *study, const TfDivides *divides,
+          const TfStudyRows *rows, const TfSampleRow *s, TfFindings *findings)
+{
+  if (more->len == 0 || rows->rows == NULL)
+    return NULL;
+  const TfExportRow row = { .row = g_ptr_array_index (rows->rows, s->row),
+                            .sample = *s,
+                            .verdict = tf_verdict_judge (s, divides, &study->verdict) };
+  for (guint k = 0; k < more->len; k++)
+    {
+      const TfCondition *condition = g_ptr_array_index (more, k);
+      int holds = tf_condition_holds (condition, &row);
+      if (holds > 0)
+        continue;
+      g_autofree char *text = tf_condition_dup_text (condition);
+      const char *key = g_intern_string (text);
+      if (holds == 0)
+        return key;
+      if (findings != NULL)
+        tf_study_count (findings->passed_without, key);
+    }
+  return NULL;
+}
+
 TfSample *
 tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings)
 {
   TfSample *marks = tf_sample_new ();
+  g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   for (guint k = 0; k < tf_sample_get_n (rows->all); k++)
     {
       const TfSampleRow *s = tf_sample_get (rows->all, k);
@@ -105,6 +134,8 @@ tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findi
       const char *reason = row != NULL ? find_row_reason (&study->sieve, row) : NULL;
       if (reason == NULL)
         reason = find_reason (conditions, MARK_CONDITIONS);
+      if (reason == NULL)
+        reason = ask_more (study->mark_conditions, study, divides, rows, s, findings);
       if (settle (reason, conditions, MARK_CONDITIONS, findings))
         tf_sample_add (marks, s);
     }
@@ -117,6 +148,7 @@ tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *m
 {
   TfSamplingTally tally;
   TfSample *picks = tf_sample_new ();
+  g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   g_autoptr (TfSample) found = tf_sampling_pick (marks, &study->sampling, &tally);
   tally.not_bracketed = 0;
   for (guint k = 0; k < tf_sample_get_n (found); k++)
@@ -125,6 +157,8 @@ tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *m
       Condition conditions[REGION_CONDITIONS];
       region_conditions (&study->sieve, s, conditions);
       const char *reason = find_reason (conditions, REGION_CONDITIONS);
+      if (reason == NULL)
+        reason = ask_more (study->region_conditions, study, divides, rows, s, findings);
       if (!settle (reason, conditions, REGION_CONDITIONS, findings))
         continue;
       tally.not_bracketed += s->bracketed == 0;

@@ -6,6 +6,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-sieve.h"
 #include "tf-study-private.h"
 
 G_DEFINE_QUARK (tf - study - error - quark, tf_study_error)
@@ -38,6 +39,9 @@ tf_study_new_default (void)
 {
   TfStudy *study = g_new0 (TfStudy, 1);
   study->name = g_strdup ("default");
+  study->mark_conditions = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_condition_free);
+  study->region_conditions = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_condition_free);
+  study->even_floor_gauss = NAN;
   tf_options_reset (tf_sieve_options, &study->sieve);
   tf_options_reset (tf_sampling_options, &study->sampling);
   tf_options_reset (tf_verdict_options, &study->verdict);
@@ -56,6 +60,8 @@ tf_study_free (TfStudy *study)
     return;
   if (study->divides != NULL)
     tf_divides_unref (study->divides);
+  g_ptr_array_unref (study->mark_conditions);
+  g_ptr_array_unref (study->region_conditions);
   g_free (study->divides_shown);
   g_free (study->name);
   g_free (study);
@@ -306,15 +312,33 @@ complain_empty (const TfStudy *study, const GPtrArray *rows, TfLedger *ledger, G
   return TRUE;
 }
 
+/* Numbers in the order in which they first come, from 1: the draws of a bootstrap then do not hang
+ * on a ledger's local keys, and a bundle's rows give the same. */
+static guint32
+renumber (GHashTable *numbers, guint32 key)
+{
+  guint32 number = GPOINTER_TO_UINT (g_hash_table_lookup (numbers, GUINT_TO_POINTER (key)));
+  if (number == 0)
+    {
+      number = g_hash_table_size (numbers) + 1;
+      g_hash_table_insert (numbers, GUINT_TO_POINTER (key), GUINT_TO_POINTER (number));
+    }
+  return number;
+}
+
 TfSample *
 tf_study_sample_rows (const GPtrArray *rows)
 {
   TfSample *all = tf_sample_new ();
+  g_autoptr (GHashTable) regions = g_hash_table_new (NULL, NULL);
+  g_autoptr (GHashTable) passages = g_hash_table_new (NULL, NULL);
   for (guint k = 0; k < rows->len; k++)
     {
       TfSampleRow row;
       tf_study_row (g_ptr_array_index (rows, k), &row);
       row.row = k;
+      row.region = renumber (regions, row.region);
+      row.passage = renumber (passages, row.passage);
       tf_sample_add (all, &row);
     }
   return all;

@@ -34,6 +34,7 @@ G_BEGIN_DECLS
 GQuark tf_study_error_quark (void);
 typedef enum
 {
+  TF_STUDY_ERROR_READ,  /* no study, or a part of one that is not as it should be */
   TF_STUDY_ERROR_EMPTY, /* nothing to judge: says what there is and how to take hints in */
 } TfStudyError;
 
@@ -60,7 +61,11 @@ extern const TfOption tf_sieve_options[];
 typedef struct
 {
   char *name;
+  guint version; /* as it was kept; 0: not kept */
   TfSieveParams sieve;
+  /* TfCondition (tf-sieve.h): beside what the sieve's options say, on marks and on picks. */
+  GPtrArray *mark_conditions, *region_conditions;
+  double even_floor_gauss; /* as it was worked out when the study was kept; NaN: not yet */
   TfSamplingParams sampling;
   TfVerdictParams verdict;
   TfDivideParams divide;
@@ -73,6 +78,11 @@ typedef struct
 } TfStudy;
 TfStudy *tf_study_new_default (void);
 void tf_study_free (TfStudy *study);
+/** tf_study_dup_text: study.json of 6-commands. tf_study_build_file: the builder's next value. */
+char *tf_study_dup_text (const TfStudy *study);
+void tf_study_build_file (const TfStudy *study, JsonBuilder *builder);
+/** tf_study_read_text: the inverse; errors name @name, the member and what it should be. */
+TfStudy *tf_study_read_text (const char *text, const char *name, GError **error);
 /** tf_study_read_divides: takes the divides that people moved for the study of this name in the
  * ledger. */
 gboolean tf_study_read_divides (TfStudy *study, TfLedger *ledger, GError **error);

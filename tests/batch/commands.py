@@ -485,6 +485,25 @@ def _():
             assert measure["hale"]["verdict"] != "breaks", f"{name}: {measure['hale']}"
 
 
+@test("a study goes through a file and the ledger unchanged; against an edition only what differs is listed, with the reason")
+def _():
+    ledger, file = os.path.join(work, "studies.ledger"), os.path.join(work, "narrow.json")
+    call("fill", ledger, first_disk())
+    chosen = ["--with-hints", "--cmd-max", "45", "--joy-draws", "20", "--hale-draws", "20", "--name", "narrow"]
+    first = document("laws", ledger, "--json", *chosen, "--save-study", file, "--keep-edition", "one", "--person", "north")
+    for study in (file, "narrow"):
+        assert document("laws", ledger, "--json", "--study", study) == first, f"{study}: other numbers"
+    same = document("laws", ledger, "--json", "--study", "narrow", "--against", "one")
+    assert same["same"] and same["differences"] == [], same
+    wider = document("laws", ledger, "--json", "--study", "narrow", "--cmd-max", "60", "--flux-min", "1e22", "--against", "one")
+    words = "\n".join(wider["differences"])
+    assert not wider["same"] and "mark_conditions" in words and "flux_unsigned_mx" in words and "Number: " in words, words
+    call("laws", ledger, "--study", "narrow", "--keep-edition", "one", "--person", "north", code=3)
+    call("laws", ledger, "--keep-study", code=2)
+    call("laws", ledger, "--study", "nowhere", code=3)
+    call("check", ledger)
+
+
 shutil.rmtree(work, ignore_errors=True)
 print(f"1..{number}")
 sys.exit(1 if failed else 0)

@@ -7,6 +7,7 @@
 
 void test_study_add_ledger (void);
 void test_study_add_pair (void);
+void test_study_add_file (void);
 void test_study_add_row (void);
 void test_study_add_sample (void);
 void test_study_add_shift (void);

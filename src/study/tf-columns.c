@@ -2,8 +2,10 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 #include <math.h>
+#include <string.h>
 
-#include "tf-export.h"
+#include "tf-columns.h"
+#include "tf-json.h"
 #include "tf-ledger-outside.h"
 #include "tf-mount-wilson.h"
 
@@ -227,3 +229,44 @@ const TfColumn tf_columns[] = {
   { NULL },
 };
 /* clang-format on */
+
+const TfColumn *
+tf_column_find (const char *name)
+{
+  for (const TfColumn *column = tf_columns; column->name != NULL; column++)
+    if (strcmp (column->name, name) == 0)
+      return column;
+  return NULL;
+}
+
+/* Of a row that came in a table, what is judged or says which row it is is worked out here; all
+ * else stands as it was brought. */
+static JsonObject *
+find_flat (const TfColumn *column, const TfExportRow *row)
+{
+  static const char *const here[]
+      = { "region", "passage", "mark",        "origin",     "time",        "polarity_tilt_deg",
+          "cycle",  "cycle_sure", "hale",     "hale_reason", "class_base", "class_delta",
+          "source", "licence", "source_row", NULL };
+  if (row->row->outside == NULL || g_strv_contains (here, column->name))
+    return NULL;
+  return tf_outside_row_get_flat (row->row->outside);
+}
+
+double
+tf_column_number (const TfColumn *column, const TfExportRow *row)
+{
+  JsonObject *flat = find_flat (column, row);
+  double value = flat != NULL ? tf_json_member_number (flat, column->name) : column->number (row);
+  return value * column->factor;
+}
+
+char *
+tf_column_dup_text (const TfColumn *column, const TfExportRow *row)
+{
+  JsonObject *flat = find_flat (column, row);
+  if (flat == NULL)
+    return column->text (row);
+  const char *text = tf_json_member_string (flat, column->name);
+  return g_strdup (text != NULL ? text : "");
+}
