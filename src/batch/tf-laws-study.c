@@ -22,6 +22,7 @@ tf_laws_words_clear (TfLawsWords *words)
   g_free (words->save_study);
   g_free (words->keep_edition);
   g_free (words->against);
+  g_free (words->figures);
 }
 
 void
