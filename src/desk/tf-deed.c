@@ -241,7 +241,6 @@ tf_deed_word (const char *what)
     { "external", N_ ("external number") },
     { "resolve", N_ ("note settled") },
     { "geometry", N_ ("geometry corrected") },
-    { "geometry", N_ ("geometry corrected") },
     { "divide", N_ ("divide moved") },
     { "shift", N_ ("shift handed over") },
     { "undo", N_ ("undone") },

@@ -13,7 +13,7 @@ struct _TfPlatePane
   GtkWidget parent;
   TfPlate *plate;
   GtkLabel *readout, *trouble, *tool_words;
-  GtkWidget *tools, *over_progress, *trouble_box, *lies_box;
+  GtkWidget *tools, *over_progress, *trouble_box, *lies_box, *find_moved;
   GtkLabel *lies;
   gint64 left; /* frame whose header may lie: the person has seen it and left it */
   GtkBox *foot;
@@ -139,6 +139,7 @@ frame_changed (TfPlatePane *self)
   gtk_widget_set_visible (self->trouble_box,
                           text != NULL && !open && !tf_session_is_loading (self->session));
   gtk_label_set_label (self->trouble, text != NULL ? text : "");
+  gtk_widget_set_visible (self->find_moved, tf_session_is_file_missing (self->session));
   gtk_widget_set_visible (self->tools, open);
   gboolean map = open && tf_geometry_is_map (tf_frame_get_geometry (tf_session_get_frame (self->session)));
   gtk_button_set_label (self->as_stored, map ? _ ("map") : _ ("disk"));
@@ -223,6 +224,7 @@ tf_plate_pane_class_init (TfPlatePaneClass *klass)
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range_button);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, as_stored);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, lies_box);
+  gtk_widget_class_bind_template_child (widget, TfPlatePane, find_moved);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, lies);
   gtk_widget_class_bind_template_callback (widget, leave_lie);
   gtk_widget_class_bind_template_child (widget, TfPlatePane, range_words);

@@ -15,7 +15,11 @@ struct _TfRoll
   GtkListView *list;
   GtkStack *stack;
   GtkLabel *empty, *narrowed_words;
-  GtkWidget *narrowed; /* stands while the wings' stretch hides frames */
+  GtkWidget *narrowed; /* stands while the wings' stretch or the filter hides frames */
+  GtkMenuButton *filter_button;
+  GtkLabel *filter_words, *watch_words;
+  GtkWidget *watch_box;
+  char **instruments; /* of the filter's menu */
   TfSession *session;
   GtkSingleSelection *selection;
   TfThumbs *thumbs;
@@ -91,14 +95,84 @@ static void
 show_narrowed (TfRoll *self, guint n)
 {
   double from, to;
+  guint all = tf_session_get_n_frames (self->session);
   tf_session_get_pick (self->session, &from, &to);
-  gtk_widget_set_visible (self->narrowed, isfinite (from) && isfinite (to));
-  if (!isfinite (from) || !isfinite (to))
-    return;
+  gboolean picked = isfinite (from) && isfinite (to);
+  gboolean filtered = tf_session_get_roll_filter (self->session) != TF_ROLL_ALL
+                      || tf_session_get_roll_instrument (self->session) != NULL;
+  gtk_widget_set_visible (self->narrowed, picked || filtered);
   g_autofree char *first = dup_day_of (from), *last = dup_day_of (to);
-  g_autofree char *text = g_strdup_printf (_ ("%s to %s: %u of %u frames"), first, last, n,
-                                           tf_session_get_n_frames (self->session));
+  g_autofree char *text = picked ? g_strdup_printf (_ ("%s to %s: %u of %u frames"), first, last, n, all)
+                                 : g_strdup_printf (_ ("%u of %u frames"), n, all);
   gtk_label_set_label (self->narrowed_words, text);
+}
+
+/* -- the filter ------------------------------------------------------------------------------ */
+
+static const char *const filter_labels[TF_N_ROLL_FILTERS]
+    = { N_ ("all frames"), N_ ("untouched"), N_ ("hints waiting"), N_ ("done"), N_ ("refused") };
+
+static GMenuModel *
+filter_menu (char *const *instruments)
+{
+  GMenu *menu = g_menu_new ();
+  g_autoptr (GMenu) states = g_menu_new (), origins = g_menu_new ();
+  for (guint k = 0; k < TF_N_ROLL_FILTERS; k++)
+    {
+      g_autofree char *action
+          = g_strconcat ("win.roll-state::", tf_roll_filter_name ((TfRollFilter)k), NULL);
+      g_menu_append (states, _ (filter_labels[k]), action);
+    }
+  g_menu_append_section (menu, NULL, G_MENU_MODEL (states));
+  for (guint k = 0; instruments[k] != NULL; k++)
+    {
+      g_autoptr (GMenuItem) item = g_menu_item_new (instruments[k], NULL);
+      g_menu_item_set_action_and_target (item, "win.roll-instrument", "s", instruments[k]);
+      g_menu_append_item (origins, item);
+    }
+  g_autoptr (GMenuItem) every = g_menu_item_new (_ ("all instruments"), NULL);
+  g_menu_item_set_action_and_target (every, "win.roll-instrument", "s", "");
+  g_menu_prepend_item (origins, every);
+  g_menu_append_section (menu, _ ("Instrument"), G_MENU_MODEL (origins));
+  return G_MENU_MODEL (menu);
+}
+
+static void
+show_filter (TfRoll *self)
+{
+  g_auto (GStrv) now = tf_session_dup_instruments (self->session);
+  if (self->instruments == NULL || !g_strv_equal ((const char *const *)now,
+                                                  (const char *const *)self->instruments))
+    {
+      g_autoptr (GMenuModel) model = filter_menu (now);
+      gtk_menu_button_set_menu_model (self->filter_button, model);
+      g_strfreev (self->instruments);
+      self->instruments = g_steal_pointer (&now);
+    }
+  const char *state = _ (filter_labels[tf_session_get_roll_filter (self->session)]),
+             *instrument = tf_session_get_roll_instrument (self->session);
+  g_autofree char *words = instrument != NULL ? g_strdup_printf ("%s · %s", state, instrument)
+                                              : g_strdup (state);
+  g_autofree char *name = g_strdup_printf (_ ("The roll shows: %s"), words);
+  gtk_label_set_label (self->filter_words, words);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self->filter_button),
+                                  GTK_ACCESSIBLE_PROPERTY_LABEL, name, -1);
+  gtk_widget_set_visible (GTK_WIDGET (self->filter_button),
+                          tf_session_get_n_frames (self->session) > 1);
+}
+
+static void
+show_watched (TfRoll *self)
+{
+  const char *folder = tf_session_get_watched (self->session);
+  gtk_widget_set_visible (self->watch_box, folder != NULL);
+  if (folder == NULL)
+    return;
+  g_autofree char *base = g_path_get_basename (folder),
+                  *words = g_strdup_printf (_ ("watching %s"), base),
+                  *tip = g_strdup_printf (_ ("New frames in %s are taken in as they arrive."), folder);
+  gtk_label_set_label (self->watch_words, words);
+  gtk_widget_set_tooltip_text (GTK_WIDGET (self->watch_words), tip);
 }
 
 static void
@@ -107,10 +181,12 @@ frames_changed (TfRoll *self)
   guint n = g_list_model_get_n_items (tf_session_get_frames (self->session));
   gboolean some = tf_session_get_n_frames (self->session) > 0;
   show_narrowed (self, n);
+  show_filter (self);
+  show_watched (self);
   gtk_stack_set_visible_child_name (self->stack, n > 0 ? "list" : "empty");
   gtk_label_set_label (
       self->empty,
-      some ? _ ("No frame in the stretch chosen on the wings. Double-click the wings for all.")
+      some ? _ ("No frame is like this. Press Show all for every frame.")
            : _ ("The roll is empty. Add frames, or drop them on the window."));
   frame_changed (self);
 }
@@ -142,6 +218,7 @@ dispose (GObject *object)
   g_clear_object (&self->selection);
   g_clear_object (&self->session);
   g_clear_pointer (&self->thumbs, tf_thumbs_free);
+  g_clear_pointer (&self->instruments, g_strfreev);
   G_OBJECT_CLASS (tf_roll_parent_class)->dispose (object);
 }
 
@@ -158,6 +235,10 @@ tf_roll_class_init (TfRollClass *klass)
   gtk_widget_class_bind_template_child (widget, TfRoll, empty);
   gtk_widget_class_bind_template_child (widget, TfRoll, narrowed);
   gtk_widget_class_bind_template_child (widget, TfRoll, narrowed_words);
+  gtk_widget_class_bind_template_child (widget, TfRoll, filter_button);
+  gtk_widget_class_bind_template_child (widget, TfRoll, filter_words);
+  gtk_widget_class_bind_template_child (widget, TfRoll, watch_box);
+  gtk_widget_class_bind_template_child (widget, TfRoll, watch_words);
 }
 
 static void

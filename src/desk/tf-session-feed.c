@@ -123,8 +123,10 @@ keep_trouble (TfSession *self, const TfFeedState *state)
 static void
 say_fed (TfSession *self, const TfFeedState *state)
 {
+  gboolean quiet = self->feed_quiet && state->added == 0 && state->failed == 0;
+  self->feed_quiet = FALSE;
   keep_trouble (self, state);
-  if (state->error != NULL)
+  if (state->error != NULL || quiet)
     return;
   GString *text = g_string_new (NULL);
   g_string_append_printf (text, ngettext ("%u frame added", "%u frames added", state->added),

@@ -13,13 +13,7 @@
 static gboolean
 in_pick (gpointer object, gpointer data)
 {
-  const TfSession *self = data;
-  if (isnan (self->pick_from))
-    return TRUE;
-  const TfFrameRow *row = tf_frame_item_get_row (object);
-  double year = tf_time_year (row->info->time);
-  return year >= self->pick_from && year <= self->pick_to
-         && (self->pick_frames == NULL || g_hash_table_contains (self->pick_frames, &row->id));
+  return tf_session_shows_frame (data, object);
 }
 
 void

@@ -51,6 +51,12 @@ tf_session_check_geometry (TfSession *self)
 {
   if (self->frame_item == NULL)
     return;
+  if (self->look_again && !tf_session_is_file_missing (self))
+    {
+      self->look_again = FALSE;
+      if (self->frame == NULL && !self->loading)
+        tf_session_reopen_frame (self);
+    }
   TfCorrection now
       = tf_frame_row_get_correction (tf_frame_item_get_row (self->frame_item), self->person);
   if (tf_correction_equal (&now, &self->correction))

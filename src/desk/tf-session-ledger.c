@@ -318,6 +318,7 @@ tf_session_close (TfSession *self)
   if (self->reading != NULL)
     g_cancellable_cancel (self->reading);
   g_clear_object (&self->reading);
+  g_clear_pointer (&self->arrivals, tf_watch_free);
   g_clear_pointer (&self->feed, tf_feed_free);
   g_clear_pointer (&self->progress, g_free);
   g_clear_pointer (&self->to_add, g_strfreev);

@@ -10,6 +10,7 @@
 #include "tf-loader.h"
 #include "tf-session.h"
 #include "tf-tracer.h"
+#include "tf-watch.h"
 #include "tf-wings.h"
 #include "tf-writer.h"
 
@@ -72,6 +73,11 @@ struct _TfSession
   char *progress; /* words of the feed */
   double progress_share;
   char **to_add;      /* frames that wait until the ledger is open or others are in */
+  TfRollFilter roll_filter;
+  char *roll_instrument; /* NULL: all */
+  TfWatch *arrivals;     /* of the folder that is watched */
+  gboolean feed_quiet;   /* the feed in hand was not asked for: only news are said */
+  gboolean look_again;   /* the chosen frame's file was found: open it when the roll is read */
   char *feed_trouble; /* files that could not be taken in, one sentence a line */
 
   TfCorrection correction; /* the person's, of the frame on the plate; none */
@@ -172,6 +178,9 @@ void tf_session_move_draft (TfSession *session, TfFrame *frame);
 /** tf_session_move_row: what was measured under another geometry than the one shown lies round the
  * same pixels, and says so. */
 void tf_session_move_row (TfSession *session, TfRow *row);
+/** tf_session_shows_frame: as filter and wings have it. */
+gboolean tf_session_shows_frame (TfSession *session, TfFrameItem *item);
+void tf_session_clear_roll (TfSession *session);
 void tf_session_init_overlays (TfSession *session);
 void tf_session_clear_overlays (TfSession *session);
 /** tf_session_update_overlays: asks for the lines and ghosts of what is on the plate now. */

@@ -41,6 +41,7 @@ dispose (GObject *object)
 {
   TfSession *self = TF_SESSION (object);
   tf_session_close (self);
+  tf_session_clear_roll (self);
   tf_session_clear_overlays (self);
   g_clear_pointer (&self->loader, tf_loader_free);
   g_clear_pointer (&self->frame, tf_frame_unref);

@@ -92,6 +92,34 @@ void tf_session_forget_feed_trouble (TfSession *session);
  * and NaN */
 TfTime tf_session_get_newest (TfSession *session, double *cadence_s);
 
+/* -- the roll (tf-session-roll.c) */
+typedef enum
+{
+  TF_ROLL_ALL,
+  TF_ROLL_UNTOUCHED,
+  TF_ROLL_WAITING,
+  TF_ROLL_DONE,
+  TF_ROLL_REFUSED,
+  TF_N_ROLL_FILTERS
+} TfRollFilter;
+/** tf_roll_filter_name: "all", "untouched", ...: of the action */
+const char *tf_roll_filter_name (TfRollFilter filter);
+TfRollFilter tf_session_get_roll_filter (TfSession *session);
+void tf_session_set_roll_filter (TfSession *session, TfRollFilter filter);
+/** tf_session_get_roll_instrument: (nullable): whose frames alone the roll shows */
+const char *tf_session_get_roll_instrument (TfSession *session);
+void tf_session_set_roll_instrument (TfSession *session, const char *instrument);
+/** tf_session_dup_instruments: of all frames, in order of name */
+char **tf_session_dup_instruments (TfSession *session);
+/** tf_session_get_watched: (nullable): the folder whose new frames are taken in as they arrive */
+const char *tf_session_get_watched (TfSession *session);
+/** tf_session_set_watched: NULL: none. FALSE when it cannot be watched, which is said. */
+gboolean tf_session_set_watched (TfSession *session, const char *folder);
+/** tf_session_find_moved: looks in a folder for frames whose file is not where it was. */
+void tf_session_find_moved (TfSession *session, const char *folder);
+/** tf_session_is_file_missing: the chosen frame cannot be shown because its file is gone. */
+gboolean tf_session_is_file_missing (TfSession *session);
+
 /* -- the view (tf-session-view.c) */
 const TfView *tf_session_get_view (TfSession *session);
 void tf_session_set_view_size (TfSession *session, double width, double height);

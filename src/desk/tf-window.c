@@ -219,7 +219,10 @@ ledger_changed (TfWindow *self)
   show_bar (self->ledger_bar, self->ledger_problem, problem);
   gtk_widget_set_visible (self->make_here, tf_window_can_make_here (self));
   if (tf_session_has_ledger (self->session))
-    tf_preferences_set ("ledger", path);
+    {
+      tf_preferences_set ("ledger", path);
+      tf_window_restore_watch (self);
+    }
   show_page (self);
   tf_window_update_actions (self);
 }

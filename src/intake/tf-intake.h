@@ -49,6 +49,9 @@ void tf_intake_params_init (TfIntakeParams *params);
 
 /** tf_intake_list: (transfer full) NULL-ended: files of the given files and folders (*.fits *.fit *.fts *.fits.gz *.fz, folders deep), each once, in name order. */
 char **tf_intake_list (char *const *paths, GError **error);
+/** tf_intake_find_moved: frames of the ledger whose file is not where it was are looked for, by checksum, in files and folders @paths; the
+ * ledger then knows their new place. Nothing else is taken in. @n_missing: before. Cancelled: what was found so far stays. */
+gboolean tf_intake_find_moved (TfLedger *ledger, char *const *paths, TfCancel *cancel, guint *n_missing, guint *n_found, GError **error);
 /** tf_intake_fill: FALSE with an error only when nothing could be done (ledger not writable) or cancelled. */
 gboolean tf_intake_fill (TfLedger *ledger, char *const *files, const TfIntakeParams *params, TfCancel *cancel,
                          TfIntakeFunc func, gpointer data, GError **error);

@@ -21,6 +21,7 @@ void test_desk_add_words (void);
 void test_desk_add_geometry (void);
 void test_desk_add_list (void);
 void test_desk_add_plate (void);
+void test_desk_add_roll (void);
 void test_desk_add_session (void);
 void test_desk_add_window (void);
 void test_desk_add_laws (void);

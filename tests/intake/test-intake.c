@@ -245,6 +245,7 @@ main (int argc, char **argv)
   FIXTURE_TEST ("/intake/fill/hints-may-come-later", test_frames_then_hints);
   FIXTURE_TEST ("/intake/fill/complexity-comes-with-every-hint-or-later", test_complexity);
   FIXTURE_TEST ("/intake/remeasure/what-was-changed-is-found", test_remeasure);
+  add_watch_tests ();
   add_kill_tests ();
   return g_test_run ();
 }

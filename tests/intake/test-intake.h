@@ -44,6 +44,7 @@ void check_clean (TfLedger *ledger);
 int run_child (const char *what, const char *folder);
 
 void add_kill_tests (void);
+void add_watch_tests (void);
 
 #define FIXTURE_TEST(path, func) g_test_add (path, Fixture, NULL, fixture_set_up, func, fixture_tear_down)
 G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (Tally, tally_clear)
