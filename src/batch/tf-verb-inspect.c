@@ -9,6 +9,7 @@
 #include "tf-constants.h"
 #include "tf-json.h"
 #include "tf-number.h"
+#include "tf-witness.h"
 
 /* inspect: what a frame is. A frame refused is an answer; only a file that cannot be read is a failure. */
 
@@ -52,8 +53,37 @@ build_geometry (JsonBuilder *builder, const TfFrameInfo *info)
   tf_json_string (builder, "projection", known ? tf_projection_name (g->projection) : NULL);
 }
 
+/* What the orientation witness said of a frame and another of the call. */
+typedef struct
+{
+  const char *against; /* NULL: no frame of the call can be held against it */
+  TfTime time;         /* of that frame */
+  TfOrientation answer;
+  double score[4];
+  TfNote *reason;
+} Witness;
+
 static void
-build_info (JsonBuilder *builder, const char *path, int hdu, const TfFrameInfo *info, const TfFrame *frame)
+build_witness (JsonBuilder *builder, const Witness *witness)
+{
+  json_builder_set_member_name (builder, "orientation");
+  if (witness->against == NULL)
+    {
+      json_builder_add_null_value (builder);
+      return;
+    }
+  json_builder_begin_object (builder);
+  tf_json_string (builder, "against", witness->against);
+  tf_json_string (builder, "answer", tf_orientation_name (witness->answer));
+  tf_json_numbers (builder, "scores", witness->score, 4);
+  json_builder_set_member_name (builder, "reason");
+  tf_note_build_json (witness->reason, builder);
+  json_builder_end_object (builder);
+}
+
+static void
+build_info (JsonBuilder *builder, const char *path, int hdu, const TfFrameInfo *info, const TfFrame *frame,
+            const Witness *witness)
 {
   g_autofree char *time = tf_time_dup_iso (info->time, 3);
   json_builder_begin_object (builder);
@@ -80,6 +110,7 @@ build_info (JsonBuilder *builder, const char *path, int hdu, const TfFrameInfo *
   tf_notes_build_json (info->repairs, builder);
   json_builder_set_member_name (builder, "cautions");
   tf_notes_build_json (frame != NULL ? tf_frame_get_cautions (frame) : info->cautions, builder);
+  build_witness (builder, witness);
   json_builder_end_object (builder);
 }
 
@@ -119,7 +150,7 @@ print_disk (const TfGeometry *g)
 }
 
 static void
-print_info (const char *path, const TfFrameInfo *info, const TfFrame *frame)
+print_info (const char *path, const TfFrameInfo *info, const TfFrame *frame, const Witness *witness)
 {
   const TfGeometry *g = &info->geometry;
   g_autofree char *time = tf_time_dup_iso (info->time, 0);
@@ -143,18 +174,95 @@ print_info (const char *path, const TfFrameInfo *info, const TfFrame *frame)
     }
   print_notes (_ ("repair"), info->repairs);
   print_notes (_ ("caution"), frame != NULL ? tf_frame_get_cautions (frame) : info->cautions);
+  if (witness->against == NULL)
+    return;
+  g_autoptr (TfNote) note = tf_orientation_note (witness->answer, witness->reason, witness->time);
+  g_autofree char *said = tf_note_dup_text (note, FALSE);
+  printf (_ ("  orientation: %s\n"), said);
+}
+
+/* -- frames held against each other ---------------------------------------------------------- */
+
+typedef struct
+{
+  char **paths;
+  guint n;
+  TfFrameInfo **infos; /* by their headers; NULL where there is none */
+  const TfFrameSpec *spec;
+  const TfWork *work;
+  guint last;          /* the frame opened last, which is often the next one's */
+  TfFrame *last_frame; /* NULL */
+} Call;
+
+static void
+look_at_all (Call *call)
+{
+  call->infos = g_new0 (TfFrameInfo *, call->n);
+  for (guint k = 0; k < call->n && call->n > 1; k++)
+    call->infos[k] = tf_frame_look (call->paths[k], call->spec, NULL, NULL);
+}
+
+static void
+call_clear (Call *call)
+{
+  for (guint k = 0; k < call->n; k++)
+    tf_frame_info_free (call->infos[k]);
+  g_free (call->infos);
+  g_clear_pointer (&call->last_frame, tf_frame_unref);
+}
+
+/* The one nearest in time that the witness can use; the number of frames when there is none. */
+static guint
+partner_of (const Call *call, guint at)
+{
+  guint best = call->n;
+  double least = INFINITY;
+  for (guint k = 0; k < call->n && call->infos[at] != NULL; k++)
+    {
+      if (k == at || call->infos[k] == NULL || !tf_orientation_fits (call->infos[at], call->infos[k]))
+        continue;
+      double apart = fabs (call->infos[k]->time.s - call->infos[at]->time.s);
+      if (apart < least)
+        best = k;
+      least = fmin (apart, least);
+    }
+  return best;
+}
+
+static TfFrame *
+open_partner (Call *call, guint k)
+{
+  if (call->last_frame != NULL && call->last == k)
+    return tf_frame_ref (call->last_frame);
+  return tf_frame_open (call->paths[k], call->spec, call->work, NULL); /* its own turn says why not */
+}
+
+static void
+hear_witness (Call *call, guint at, TfFrame *frame, Witness *witness)
+{
+  guint k = partner_of (call, at);
+  g_autoptr (TfFrame) other = k < call->n ? open_partner (call, k) : NULL;
+  if (other == NULL)
+    return;
+  gboolean before = call->infos[k]->time.s < call->infos[at]->time.s;
+  witness->against = call->paths[k];
+  witness->time = call->infos[k]->time;
+  witness->answer = tf_orientation_witness (before ? other : frame, before ? frame : other, witness->score,
+                                            &witness->reason);
 }
 
 /* FALSE when the file could not be read at all. */
 static gboolean
-inspect_one (const char *path, const TfFrameSpec *spec, const TfWork *work, JsonBuilder *builder)
+inspect_one (Call *call, guint at, JsonBuilder *builder)
 {
+  const char *path = call->paths[at];
   g_autoptr (GError) error = NULL;
   int hdu = 0;
-  g_autoptr (TfFrameInfo) info = tf_frame_look (path, spec, &hdu, &error);
+  Witness witness = { 0 };
+  g_autoptr (TfFrameInfo) info = tf_frame_look (path, call->spec, &hdu, &error);
   g_autoptr (TfFrame) frame = NULL;
   if (info != NULL && info->role == TF_ROLE_FIELD)
-    frame = tf_frame_open (path, spec, work, &error);
+    frame = tf_frame_open (path, call->spec, call->work, &error);
   if (error != NULL && !g_error_matches (error, TF_FRAME_ERROR, TF_FRAME_ERROR_REFUSED))
     {
       if (builder != NULL)
@@ -163,10 +271,16 @@ inspect_one (const char *path, const TfFrameSpec *spec, const TfWork *work, Json
       return FALSE;
     }
   const TfFrameInfo *shown = frame != NULL ? tf_frame_get_info (frame) : info;
+  if (frame != NULL)
+    hear_witness (call, at, frame, &witness);
   if (builder != NULL)
-    build_info (builder, path, hdu, shown, frame);
+    build_info (builder, path, hdu, shown, frame, &witness);
   else
-    print_info (path, shown, frame);
+    print_info (path, shown, frame, &witness);
+  tf_note_free (witness.reason);
+  g_clear_pointer (&call->last_frame, tf_frame_unref);
+  call->last_frame = g_steal_pointer (&frame);
+  call->last = at;
   return TRUE;
 }
 
@@ -192,8 +306,11 @@ tf_verb_inspect (int argc, char **argv)
   int failed = 0;
   if (json)
     json_builder_begin_array (builder);
-  for (int k = 1; k < argc && !tf_cancel_is_raised (work->cancel); k++)
-    failed += !inspect_one (argv[k], &words.spec, work, builder);
+  Call call = { .paths = argv + 1, .n = (guint)argc - 1, .spec = &words.spec, .work = work };
+  look_at_all (&call);
+  for (guint k = 0; k < call.n && !tf_cancel_is_raised (work->cancel); k++)
+    failed += !inspect_one (&call, k, builder);
+  call_clear (&call);
   if (json)
     {
       json_builder_end_array (builder);

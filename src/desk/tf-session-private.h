@@ -91,6 +91,9 @@ struct _TfSession
   double range;
   TfPalette palette;
 
+  GHashTable *witnesses; /* TfFrame -> TfNote: what the orientation witness said */
+  guint witness_timer;
+
   guint overlays; /* one bit a TfOverlayPart */
   TfTracer *tracer;
   GPtrArray *ghosts;  /* TfGhost; NULL */
@@ -180,6 +183,8 @@ void tf_session_move_draft (TfSession *session, TfFrame *frame);
 void tf_session_move_row (TfSession *session, TfRow *row);
 /** tf_session_shows_frame: as filter and wings have it. */
 gboolean tf_session_shows_frame (TfSession *session, TfFrameItem *item);
+void tf_session_init_witness (TfSession *session);
+void tf_session_clear_witness (TfSession *session);
 void tf_session_clear_roll (TfSession *session);
 void tf_session_init_overlays (TfSession *session);
 void tf_session_clear_overlays (TfSession *session);

@@ -41,6 +41,7 @@ dispose (GObject *object)
 {
   TfSession *self = TF_SESSION (object);
   tf_session_close (self);
+  tf_session_clear_witness (self);
   tf_session_clear_roll (self);
   tf_session_clear_overlays (self);
   g_clear_pointer (&self->loader, tf_loader_free);
@@ -124,6 +125,7 @@ tf_session_init (TfSession *self)
   self->view.zoom = 1;
   tf_session_update_pick (self);
   tf_session_init_overlays (self);
+  tf_session_init_witness (self);
 }
 
 TfSession *

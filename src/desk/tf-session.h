@@ -149,6 +149,9 @@ const TfGeometry *tf_session_get_header_geometry (TfSession *session);
 TfCorrection tf_session_get_correction (TfSession *session);
 /** tf_session_can_correct: a disk or cut-out is open, whose rows run with the Sun. */
 gboolean tf_session_can_correct (TfSession *session);
+/** tf_session_get_witness: (nullable): what the orientation witness says of the frame on the plate;
+ * comes with "overlays-changed" */
+const TfNote *tf_session_get_witness (TfSession *session);
 /** tf_session_set_preview: a correction that is being tried: drawn over the plate. NULL: none */
 void tf_session_set_preview (TfSession *session, const TfCorrection *correction);
 TfCorrection tf_session_get_preview (TfSession *session);

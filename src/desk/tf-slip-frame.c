@@ -12,7 +12,7 @@
 struct _TfSlipFrame
 {
   GtkWidget parent;
-  GtkLabel *title, *facts, *next, *cautions, *repairs, *geometry, *elsewhere;
+  GtkLabel *title, *facts, *next, *cautions, *repairs, *geometry, *elsewhere, *witness;
   GtkWidget *repairs_box, *cautions_box, *geometry_box, *again;
   TfSession *session;
 };
@@ -112,6 +112,21 @@ append_persons (GString *text, const TfFrameRow *row, const char *own)
     }
 }
 
+/* An alarm stands out; that all is well, or that nothing can be said, is quiet. */
+static void
+show_witness (TfSlipFrame *self)
+{
+  const TfNote *note = tf_session_get_witness (self->session);
+  gtk_widget_set_visible (GTK_WIDGET (self->witness), note != NULL);
+  if (note == NULL)
+    return;
+  gboolean alarm = tf_note_get_level (note) == TF_NOTE_STRONG;
+  g_autofree char *text = tf_note_dup_text (note, FALSE);
+  gtk_label_set_label (self->witness, text);
+  gtk_widget_remove_css_class (GTK_WIDGET (self->witness), alarm ? "dim-label" : "caution");
+  gtk_widget_add_css_class (GTK_WIDGET (self->witness), alarm ? "caution" : "dim-label");
+}
+
 static void
 show_geometry (TfSlipFrame *self, const TfFrameRow *row, TfFrame *frame)
 {
@@ -163,6 +178,7 @@ show (TfSlipFrame *self)
                                    : frame != NULL      ? next_step (self)
                                                         : "");
   show_geometry (self, row, frame);
+  show_witness (self);
   set_section (self->cautions_box, self->cautions,
                dup_sentences (frame != NULL ? tf_frame_get_cautions (frame) : row->info->cautions));
   set_section (self->repairs_box, self->repairs, dup_sentences (row->info->repairs));
@@ -175,6 +191,8 @@ tf_slip_frame_set_session (TfSlipFrame *self, TfSession *session)
   self->session = g_object_ref (session);
   g_signal_connect_object (session, "frame-changed", G_CALLBACK (show), self, G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "regions-changed", G_CALLBACK (show), self, G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "overlays-changed", G_CALLBACK (show_witness), self,
+                           G_CONNECT_SWAPPED);
   show (self);
 }
 
@@ -199,6 +217,7 @@ tf_slip_frame_class_init (TfSlipFrameClass *klass)
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, facts);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, next);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, geometry);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, witness);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, geometry_box);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, elsewhere);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, again);

@@ -87,6 +87,12 @@ correlate (const TfFrame *earlier, const TfFrame *later, int reading)
   return n > 500 && aa > 0 && bb > 0 ? ab / sqrt (aa * bb) : NAN;
 }
 
+static gboolean
+is_apart (double hours)
+{
+  return hours >= 3 && hours <= 120;
+}
+
 static TfNote *
 why_not (const TfFrame *earlier, const TfFrame *later)
 {
@@ -96,7 +102,7 @@ why_not (const TfFrame *earlier, const TfFrame *later)
     return tf_note_new ("witness-kind", "");
   if (g_strcmp0 (a->instrument, b->instrument) != 0)
     return tf_note_new ("witness-companions", "");
-  if (!(hours >= 3 && hours <= 120))
+  if (!is_apart (hours))
     return tf_note_new ("witness-time", "d", hours);
   return NULL;
 }
@@ -137,4 +143,43 @@ tf_orientation_witness (const TfFrame *earlier, const TfFrame *later, double sco
   if (reason != NULL)
     *reason = g_steal_pointer (&why);
   return answer;
+}
+
+gboolean
+tf_orientation_fits (const TfFrameInfo *one, const TfFrameInfo *other)
+{
+  g_return_val_if_fail (one != NULL && other != NULL, FALSE);
+  return one->kind == TF_KIND_DISK && other->kind == TF_KIND_DISK
+         && one->role == TF_ROLE_FIELD && other->role == TF_ROLE_FIELD
+         && g_strcmp0 (one->instrument, other->instrument) == 0
+         && is_apart (fabs (one->time.s - other->time.s) / 3600);
+}
+
+const char *
+tf_orientation_name (TfOrientation answer)
+{
+  static const char *const names[] = { [TF_WITNESS_CANNOT_SAY] = "cannot say",
+                                       [TF_WITNESS_AGREES] = "agrees",
+                                       [TF_WITNESS_TURNED] = "turned",
+                                       [TF_WITNESS_MIRRORED] = "mirrored" };
+  return names[answer];
+}
+
+TfNote *
+tf_orientation_note (TfOrientation answer, const TfNote *reason, TfTime other)
+{
+  g_autofree char *time = tf_time_dup_iso (other, 0);
+  const char *when = time != NULL ? time : "?";
+  switch (answer)
+    {
+    case TF_WITNESS_AGREES:
+      return tf_note_new ("orientation-agrees", "s", when);
+    case TF_WITNESS_TURNED:
+      return tf_note_new ("orientation-turned", "s", when);
+    case TF_WITNESS_MIRRORED:
+      return tf_note_new ("orientation-mirrored", "s", when);
+    case TF_WITNESS_CANNOT_SAY:
+    default:
+      return reason != NULL ? tf_note_copy (reason) : tf_note_new ("witness-empty", "");
+    }
 }

@@ -43,4 +43,13 @@ typedef enum
 TfOrientation tf_orientation_witness (const TfFrame *earlier, const TfFrame *later, double score[4],
                                       TfNote **reason);
 
+/** tf_orientation_fits: whether the witness can hold two frames against each other by their headers:
+ * full disks of one instrument, 3 h to 5 days apart, whichever is the earlier. */
+gboolean tf_orientation_fits (const TfFrameInfo *one, const TfFrameInfo *other);
+/** tf_orientation_name: "agrees" "turned" "mirrored" "cannot say" */
+const char *tf_orientation_name (TfOrientation answer);
+/** tf_orientation_note: what the witness said, as a sentence: an alarm, never a correction.
+ * @reason: (nullable): why it cannot say */
+TfNote *tf_orientation_note (TfOrientation answer, const TfNote *reason, TfTime other);
+
 G_END_DECLS

@@ -144,6 +144,36 @@ def _():
             assert note["code"] == note["code"].lower() and " " not in note["code"]
 
 
+def turned(name):
+    """A demo frame whose header says it is turned by 180 degrees more than it is."""
+    path = os.path.join(work, "turned-" + name)
+    with open(os.path.join(FRAMES, name), "rb") as file:
+        data = file.read()
+    for key, value in ((b"CROTA2", 180), (b"PC1_1", -1), (b"PC2_2", -1)):  # whichever the frame has
+        at = data.find(b"%-8s=" % key)
+        if at >= 0:
+            card = b"%-8s= %20d" % (key, value)
+            data = data[:at] + card.ljust(80) + data[at + 80:]
+    with open(path, "wb") as file:
+        file.write(data)
+    return path
+
+
+@test("two frames of one instrument bear witness to the orientation")
+def _():
+    names = "brindle-20131012-0600.fits", "brindle-20131012-1800.fits"
+    alone = document("inspect", "--json", os.path.join(FRAMES, names[0]))
+    assert alone[0]["orientation"] is None
+    for paths, answer in (([os.path.join(FRAMES, n) for n in names], "agrees"), ([turned(n) for n in names], "turned")):
+        found = document("inspect", "--json", *paths)
+        for frame, other in zip(found, reversed(paths)):
+            said = frame["orientation"]
+            assert said["against"] == other and said["answer"] == answer, said
+            assert len(said["scores"]) == 4 and said["reason"] is None
+    said = call("inspect", *[turned(n) for n in names]).stdout
+    assert "turned by 180" in said and "nothing was changed" in said, said
+
+
 @test("an unreadable file gives one line, exit 3 alone and 1 among others")
 def _():
     bad = os.path.join(work, "bad.fits")

@@ -183,9 +183,36 @@ limb_is_found (void)
   tf_session_close (session);
 }
 
+static gboolean
+has_two (gpointer session)
+{
+  return tf_session_get_n_frames (session) == 2 && tf_session_get_progress (session, NULL) == NULL;
+}
+
+static gboolean
+has_witness (gpointer session)
+{
+  return tf_session_get_witness (session) != NULL;
+}
+
+static void
+witness_is_heard (void)
+{
+  g_autofree char *path = test_desk_path ("witness.ledger");
+  g_autoptr (TfSession) session = test_desk_session (path);
+  const char *frames[] = { TF_DEMO_FRAMES "/brindle-20131012-1800.fits", NULL };
+  tf_session_add_frames (session, (char *const *)frames);
+  test_desk_wait ("two frames", has_two, session);
+  tf_session_step_frame (session, 1);
+  test_desk_wait ("the witness", has_witness, session);
+  g_assert_cmpstr (tf_note_get_code (tf_session_get_witness (session)), ==, "orientation-agrees");
+  tf_session_close (session);
+}
+
 void
 test_desk_add_geometry (void)
 {
+  g_test_add_func ("/desk/geometry/the-orientation-witness-is-heard", witness_is_heard);
   g_test_add_func ("/desk/geometry/is-corrected-measured-again-and-undone", corrected_and_undone);
   g_test_add_func ("/desk/geometry/is-the-persons-own", it_is_the_persons);
   g_test_add_func ("/desk/geometry/a-hint-becomes-a-draft", a_hint_becomes_a_draft);
