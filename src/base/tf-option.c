@@ -153,7 +153,11 @@ tf_options_read_canonical (const TfOption *table, void *params, const char *meth
       if (equals == NULL)
         return FALSE;
       *equals = '\0';
-      if (!tf_options_set (table, params, words[k], equals + 1, NULL))
+      const char *name = words[k];
+      g_autoptr (GString) value = g_string_new (equals + 1);
+      for (; words[k + 1] != NULL && strchr (words[k + 1], '=') == NULL; k++)
+        g_string_append_printf (value, " %s", words[k + 1]); /* a choice of two words */
+      if (!tf_options_set (table, params, name, value->str, NULL))
         return FALSE;
     }
   return TRUE;

@@ -9,6 +9,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-plate-shot.h"
+#include "tf-preferences-dialog.h"
 #include "tf-preferences.h"
 
 static TfSession *
@@ -140,6 +141,27 @@ ACTION (save_picture_as)
   save_picture_to (session_of (window), g_variant_get_string (value, NULL));
 }
 
+/* -- preferences */
+ACTION (show_preferences)
+{
+  gtk_window_present (
+      GTK_WINDOW (tf_preferences_dialog_new (GTK_WINDOW (window), session_of (window))));
+}
+
+ACTION (set_measure_option)
+{
+  const char *option, *text;
+  g_autoptr (GError) error = NULL;
+  g_variant_get (value, "(&s&s)", &option, &text);
+  if (!tf_preferences_set_measure (session_of (window), option, text, &error))
+    tf_window_say (window, error->message);
+}
+
+static const GActionEntry always[] = {
+  { "preferences", show_preferences, NULL, NULL, NULL },
+  { "set-measure-option", set_measure_option, "(ss)", NULL, NULL },
+};
+
 static const GActionEntry entries[] = {
   { "copy-position", copy_position, NULL, NULL, NULL },
   { "save-picture", save_picture, NULL, NULL, NULL },
@@ -153,6 +175,7 @@ tf_window_add_plate_actions (TfWindow *self)
 {
   add_overlays (self);
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
+  g_action_map_add_action_entries (G_ACTION_MAP (self), always, G_N_ELEMENTS (always), self);
 }
 
 void
@@ -178,4 +201,5 @@ void
 tf_window_restore_plate (TfWindow *self)
 {
   restore_overlays (tf_window_get_session (self));
+  tf_preferences_restore_measure (tf_window_get_session (self));
 }

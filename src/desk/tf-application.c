@@ -32,6 +32,7 @@ static const struct
   { "win.look::disk", { "<Alt>1" } },
   { "win.look::unrolled", { "<Alt>2" } },
   { "win.look::close", { "<Alt>3" } },
+  { "win.preferences", { "<Control>comma" } },
   { "win.copy-position", { "<Control><Shift>c" } },
   { "win.save-picture", { "<Control><Shift>s" } },
   { "win.show-hints", { "<Control>h" } },

@@ -101,6 +101,9 @@ show_narrowed (TfRoll *self, guint n)
   gboolean filtered = tf_session_get_roll_filter (self->session) != TF_ROLL_ALL
                       || tf_session_get_roll_instrument (self->session) != NULL;
   gtk_widget_set_visible (self->narrowed, picked || filtered);
+  gtk_label_set_label (self->narrowed_words, "");
+  if (!picked && !filtered)
+    return;
   g_autofree char *first = dup_day_of (from), *last = dup_day_of (to);
   g_autofree char *text = picked ? g_strdup_printf (_ ("%s to %s: %u of %u frames"), first, last, n, all)
                                  : g_strdup_printf (_ ("%u of %u frames"), n, all);

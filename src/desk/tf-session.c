@@ -152,6 +152,23 @@ tf_session_get_method (TfSession *self)
   return self->method;
 }
 
+const TfMeasureParams *
+tf_session_get_params (TfSession *self)
+{
+  return &self->params;
+}
+
+void
+tf_session_set_params (TfSession *self, const TfMeasureParams *params)
+{
+  g_return_if_fail (TF_IS_SESSION (self) && params != NULL);
+  self->params = *params;
+  tf_session_update_method (self);
+  if (self->draft != NULL && self->frame != NULL)
+    tf_session_measure_draft (self);
+  tf_session_emit (self, TF_SIGNAL_CHOICE);
+}
+
 const TfDivides *
 tf_session_get_divides (TfSession *self)
 {

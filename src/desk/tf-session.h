@@ -238,6 +238,10 @@ const char *tf_session_get_measure_problem (TfSession *session);
 /** tf_session_is_at_rest: the outline term is in */
 gboolean tf_session_is_at_rest (TfSession *session);
 const char *tf_session_get_method (TfSession *session);
+/** tf_session_get_params: how drafts are measured. tf_session_set_params: the draft in hand is
+ * measured anew; the method's text goes with every mark. */
+const TfMeasureParams *tf_session_get_params (TfSession *session);
+void tf_session_set_params (TfSession *session, const TfMeasureParams *params);
 const TfDivides *tf_session_get_divides (TfSession *session);
 
 /* -- deeds (tf-session-deeds.c); FALSE: not possible now (the actions ask the tf_session_can_

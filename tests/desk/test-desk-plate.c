@@ -11,6 +11,8 @@
 #include "tf-check.h"
 #include "tf-overlay.h"
 #include "tf-plate-shot.h"
+#include "tf-preferences-dialog.h"
+#include "tf-preferences.h"
 
 static gboolean
 is_open (gpointer session)
@@ -230,9 +232,65 @@ picture_as_file (void)
   tf_session_close (session);
 }
 
+/* -- preferences ----------------------------------------------------------------------------- */
+
+static const TfRow *
+find_mark (TfSession *session)
+{
+  guint n = g_list_model_get_n_items (tf_session_get_regions (session));
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) item = g_list_model_get_item (tf_session_get_regions (session), k);
+      if (!tf_region_item_get_row (item)->is_hint)
+        return tf_region_item_get_row (item); /* the list holds it */
+    }
+  return NULL;
+}
+
+static gboolean
+has_mark (gpointer session)
+{
+  return find_mark (session) != NULL && tf_session_get_pending (session) == 0;
+}
+
+/* What was chosen is kept between windows, measures the next draft, and stands with its mark. */
+static void
+measured_as_preferred (void)
+{
+  g_autoptr (GError) error = NULL;
+  g_autofree char *path = test_desk_path ("preferred.ledger");
+  g_autoptr (TfSession) session = test_desk_session (path);
+  g_assert_false (tf_preferences_set_measure (session, "floor-sigma", "900", &error));
+  g_assert_error (error, TF_OPTION_ERROR, TF_OPTION_ERROR_VALUE);
+  static const char *const wanted[][2] = { { "floor-sigma", "4.5" },
+                                           { "field", "as observed" },
+                                           { "tilt-form", "great-circle" } };
+  for (guint k = 0; k < G_N_ELEMENTS (wanted); k++)
+    g_assert_true (tf_preferences_set_measure (session, wanted[k][0], wanted[k][1], NULL));
+  g_autoptr (TfSession) later = tf_session_new ();
+  tf_preferences_restore_measure (later);
+  tf_check_near ("floor", tf_session_get_params (later)->floor_sigma, 4.5, 0);
+  g_autoptr (TfRegionItem) first = g_list_model_get_item (tf_session_get_regions (session), 0);
+  tf_session_set_draft (session, tf_region_item_get_row (first)->outline);
+  g_assert_true (tf_session_keep (session));
+  test_desk_wait ("the mark", has_mark, session);
+  const TfRow *mark = find_mark (session);
+  TfMeasureParams params;
+  TfCorrection correction;
+  g_assert_true (tf_measure_read_method (mark->method, &params, &correction));
+  tf_check_near ("the mark's floor", params.floor_sigma, 4.5, 0);
+  g_assert_cmpint (params.tilt_form, ==, 1);
+  g_assert_cmpint (params.field_used, ==, TF_FIELD_USED_OBSERVED);
+  g_assert_cmpint ((int)mark->measure.field_used, ==, TF_FIELD_USED_OBSERVED);
+  tf_preferences_set ("measure", NULL);
+  tf_session_close (session);
+}
+
 void
 test_desk_add_plate (void)
 {
+  g_test_add_func ("/desk/preferences/marks-are-measured-as-preferred-and-say-so",
+                   measured_as_preferred);
   g_test_add_func ("/desk/plate/a-position-is-a-line-of-text", position_as_text);
   g_test_add_func ("/desk/plate/the-picture-is-saved-in-three-forms", picture_as_file);
   g_test_add_func ("/desk/plate/inversion-lines-and-spots-are-found", lines_are_found);

@@ -405,6 +405,7 @@ test_method_with_geometry (void)
   TfCorrection none = tf_correction_none (), c = { 512.5, 511.25, 480, -12.5 }, read;
   tf_measure_params_init (&params);
   params.floor_gauss = 60;
+  params.field_used = TF_FIELD_USED_OBSERVED; /* a name of two words */
   g_autofree char *plain = tf_measure_dup_method (&params, &none),
                   *by_hand = tf_measure_dup_method (&params, &c);
   g_assert_cmpstr (plain, !=, by_hand);
@@ -413,6 +414,7 @@ test_method_with_geometry (void)
   g_assert_true (tf_measure_read_method (by_hand, &back, &read));
   g_assert_true (tf_correction_equal (&read, &c));
   tf_check_near ("floor", back.floor_gauss, 60, 0);
+  g_assert_cmpint (back.field_used, ==, TF_FIELD_USED_OBSERVED);
   g_autofree char *even = tf_measure_dup_even_method (by_hand, 80, &back);
   g_assert_true (tf_measure_read_method (even, &back, &read));
   g_assert_true (tf_correction_equal (&read, &c));
