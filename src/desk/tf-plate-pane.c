@@ -239,6 +239,9 @@ text_changed (TfPlatePane *self)
   gboolean large = tf_widget_text_size (GTK_WIDGET (self)) > large_text;
   gtk_orientable_set_orientation (GTK_ORIENTABLE (self->foot),
                                   large ? GTK_ORIENTATION_VERTICAL : GTK_ORIENTATION_HORIZONTAL);
+  gtk_label_set_single_line_mode (self->readout, !large);
+  gtk_label_set_wrap (self->readout, large);
+  gtk_label_set_lines (self->readout, large ? 2 : -1);
 }
 
 static void

@@ -28,13 +28,13 @@ void tf_window_restore_plate (TfWindow *window);
 void tf_window_add_frame_actions (TfWindow *window);
 void tf_window_update_frame_actions (TfWindow *window);
 void tf_window_forget_geometry (TfWindow *window);
+/** tf_window_restore_watch: the folder that was watched for this ledger is watched again. */
+void tf_window_restore_watch (TfWindow *window);
 /* tf-actions-list.c */
 void tf_window_add_list_actions (TfWindow *window);
 void tf_window_update_list_actions (TfWindow *window);
 /** tf_window_show_list: the regions beside the plate instead of the roll */
 void tf_window_show_list (TfWindow *window, gboolean list);
-/** tf_window_restore_watch: the folder that was watched for this ledger is watched again. */
-void tf_window_restore_watch (TfWindow *window);
 /* tf-window-keys.c */
 /** tf_window_press: @detailed: a window action as of a key: done, or said why it cannot be */
 void tf_window_press (TfWindow *window, const char *detailed);
