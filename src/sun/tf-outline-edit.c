@@ -189,31 +189,117 @@ keep_between (const TfRing *ring, guint from, guint to, double tolerance, gboole
 }
 
 static void
-simplify_ring (TfOutline *to, const TfRing *ring, gboolean left_out, double tolerance)
+fill_kept (TfOutline *to, const TfRing *ring, gboolean left_out, const gboolean *keep)
 {
-  double d1, d2;
-  g_autofree gboolean *keep = g_new0 (gboolean, ring->n);
   g_autoptr (GArray) kept = g_array_new (FALSE, FALSE, sizeof (TfVertex));
-  guint far = farthest (ring, 0, ring->n, &d1);
-  keep[0] = keep[far] = TRUE;
-  keep_between (ring, 0, far, tolerance, keep);
-  keep_between (ring, far, ring->n, tolerance, keep);
-  guint one = farthest (ring, 0, far, &d1), other = farthest (ring, far, ring->n, &d2);
-  keep[d1 >= d2 ? one : other] = TRUE; /* a third vertex in any case */
   for (guint k = 0; k < ring->n; k++)
     if (keep[k])
       g_array_append_val (kept, ring->vertices[k]);
   tf_outline_fill (to, (const TfVertex *)kept->data, kept->len, left_out, "", NULL);
 }
 
+static void
+simplify_ring (TfOutline *to, const TfRing *ring, gboolean left_out, double tolerance)
+{
+  double d1, d2;
+  g_autofree gboolean *keep = g_new0 (gboolean, ring->n);
+  guint far = farthest (ring, 0, ring->n, &d1);
+  keep[0] = keep[far] = TRUE;
+  keep_between (ring, 0, far, tolerance, keep);
+  keep_between (ring, far, ring->n, tolerance, keep);
+  guint one = farthest (ring, 0, far, &d1), other = farthest (ring, far, ring->n, &d2);
+  keep[d1 >= d2 ? one : other] = TRUE; /* a third vertex in any case */
+  fill_kept (to, ring, left_out, keep);
+}
+
+/* A place to 1e-6 deg. */
+static gint64 *
+place_key (TfVertex vertex)
+{
+  gint64 lon = llround (tf_wrap_360 (vertex.lon_deg) * 1e6), lat = llround (vertex.lat_deg * 1e6);
+  gint64 key = lon * 400000000 + lat;
+  return g_memdup2 (&key, sizeof key);
+}
+
+static GHashTable *
+places_of (const TfOutline *outline)
+{
+  GHashTable *places = g_hash_table_new_full (g_int64_hash, g_int64_equal, g_free, NULL);
+  for (int left_out = 0; left_out < 2; left_out++)
+    {
+      GPtrArray *rings = left_out ? outline->left_out : outline->rings;
+      for (guint k = 0; k < rings->len; k++)
+        {
+          const TfRing *ring = g_ptr_array_index (rings, k);
+          for (guint j = 0; j < ring->n; j++)
+            g_hash_table_add (places, place_key (ring->vertices[j]));
+        }
+    }
+  return places;
+}
+
+static guint
+mark_known (const TfRing *ring, GHashTable *places, gboolean *keep, guint *first)
+{
+  guint n = 0;
+  for (guint k = 0; k < ring->n; k++)
+    {
+      g_autofree gint64 *key = place_key (ring->vertices[k]);
+      keep[k] = g_hash_table_contains (places, key);
+      if (keep[k] && n++ == 0)
+        *first = k;
+    }
+  return n;
+}
+
+static void
+simplify_new_of (TfOutline *to, const TfRing *ring, gboolean left_out, double tolerance,
+                 GHashTable *places)
+{
+  guint first = 0;
+  g_autofree gboolean *known = g_new0 (gboolean, ring->n);
+  if (mark_known (ring, places, known, &first) < 3)
+    {
+      simplify_ring (to, ring, left_out, tolerance);
+      return;
+    }
+  g_autofree gboolean *keep = g_memdup2 (known, ring->n * sizeof *known);
+  guint from = first;
+  for (guint k = first + 1; k <= first + ring->n; k++)
+    if (known[k % ring->n])
+      {
+        keep_between (ring, from, k, tolerance, keep);
+        from = k;
+      }
+  fill_kept (to, ring, left_out, keep);
+}
+
+static TfOutline *
+simplify (const TfOutline *outline, double tolerance_deg, GHashTable *places)
+{
+  TfOutline *simple = tf_outline_start (outline->time);
+  for (int left_out = 0; left_out < 2; left_out++)
+    {
+      GPtrArray *rings = left_out ? outline->left_out : outline->rings;
+      for (guint k = 0; k < rings->len; k++)
+        if (places != NULL)
+          simplify_new_of (simple, g_ptr_array_index (rings, k), left_out, tolerance_deg, places);
+        else
+          simplify_ring (simple, g_ptr_array_index (rings, k), left_out, tolerance_deg);
+    }
+  tf_outline_fill_pins_of (simple, outline);
+  return tf_outline_finish (simple, NULL);
+}
+
 TfOutline *
 tf_outline_simplify (const TfOutline *outline, double tolerance_deg)
 {
-  TfOutline *simple = tf_outline_start (outline->time);
-  for (guint k = 0; k < outline->rings->len; k++)
-    simplify_ring (simple, g_ptr_array_index (outline->rings, k), FALSE, tolerance_deg);
-  for (guint k = 0; k < outline->left_out->len; k++)
-    simplify_ring (simple, g_ptr_array_index (outline->left_out, k), TRUE, tolerance_deg);
-  tf_outline_fill_pins_of (simple, outline);
-  return tf_outline_finish (simple, NULL);
+  return simplify (outline, tolerance_deg, NULL);
+}
+
+TfOutline *
+tf_outline_simplify_new (const TfOutline *outline, const TfOutline *before, double tolerance_deg)
+{
+  g_autoptr (GHashTable) places = places_of (before);
+  return simplify (outline, tolerance_deg, places);
 }

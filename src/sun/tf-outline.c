@@ -214,6 +214,29 @@ tf_outline_with_ring (const TfOutline *outline, const TfVertex *ring, guint n, g
 }
 
 TfOutline *
+tf_outline_with_ring_changed (const TfOutline *outline, guint k, gboolean left_out,
+                              const TfVertex *ring, guint n, GError **error)
+{
+  g_autoptr (TfOutline) copy = tf_outline_start (outline->time);
+  for (int out = 0; out < 2; out++)
+    {
+      GPtrArray *rings = out ? outline->left_out : outline->rings;
+      for (guint j = 0; j < rings->len; j++)
+        {
+          const TfRing *old = rings->pdata[j];
+          gboolean this_one = j == k && (out != 0) == (left_out != 0);
+          if (this_one && n == 0)
+            continue;
+          if (!tf_outline_fill (copy, this_one ? ring : old->vertices, this_one ? n : old->n, out,
+                                out ? _ ("left-out area") : _ ("ring"), error))
+            return NULL;
+        }
+    }
+  tf_outline_fill_pins_of (copy, outline);
+  return tf_outline_finish (g_steal_pointer (&copy), error);
+}
+
+TfOutline *
 tf_outline_with_pin (const TfOutline *outline, const TfPinnedPole *pin)
 {
   TfOutline *copy = tf_outline_start (outline->time);

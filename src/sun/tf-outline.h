@@ -104,6 +104,17 @@ TfOutline *tf_outline_simplify (const TfOutline *outline, double tolerance_deg);
  * them. */
 gboolean tf_outline_split (const TfOutline *outline, TfVertex a, TfVertex b, TfOutline **one,
                            TfOutline **other, GError **error);
+/** tf_outline_join: what lies in either of the two; apart from each other they become two rings. Left-out areas of both
+ * stay left out; of two pins of one polarity the first outline's stays. */
+TfOutline *tf_outline_join (const TfOutline *outline, const TfOutline *other, GError **error);
+/** tf_outline_brush: with (@in) or without a stroke of a round brush of @radius_deg (above 0, below 45) that runs along the great circle
+ * @from - @to, which may be one place. Vertices that the stroke does not touch are the very same after it. Brushed in, left-out areas
+ * come back. An error when nothing would be left. */
+TfOutline *tf_outline_brush (const TfOutline *outline, TfVertex from, TfVertex to, double radius_deg, gboolean in, GError **error);
+/** tf_outline_simplify_new: as tf_outline_simplify, of the vertices that @before has not; its own stay as they are. */
+TfOutline *tf_outline_simplify_new (const TfOutline *outline, const TfOutline *before, double tolerance_deg);
+/** tf_outline_with_ring_changed: a copy with ring @k (or left-out ring) replaced; @n 0 takes it away. */
+TfOutline *tf_outline_with_ring_changed (const TfOutline *outline, guint k, gboolean left_out, const TfVertex *ring, guint n, GError **error);
 /** tf_outline_carry: moved to @time by a rotation law, vertex by vertex (tf-rotation.h), pins too.
  * NULL when a time is unknown or the rotation has drawn the outline out over more than a
  * hemisphere. */

@@ -13,5 +13,6 @@ main (int argc, char **argv)
   add_observer_tests ();
   add_geometry_tests ();
   add_outline_tests ();
+  add_outline_combine_tests ();
   return g_test_run ();
 }

@@ -9,3 +9,4 @@ void add_time_tests (void);
 void add_observer_tests (void);
 void add_geometry_tests (void);
 void add_outline_tests (void);
+void add_outline_combine_tests (void);
