@@ -233,6 +233,7 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
   guint n;
   TfFrame *frame = tf_session_get_frame (self->session);
   tf_session_get_line (self->session, &line, &n);
+  tf_plate_draw_hand (self, cr);
   if (tf_plate_has_preview (self))
     draw_preview (self, cr);
   if (self->by_keys && self->pointer_in)
@@ -248,7 +249,10 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
     if (over.overlay.project (line[k].lon_deg, line[k].lat_deg, &points[seen][0], &points[seen][1],
                               over.overlay.data))
       seen++;
-  if (self->pointer_in && tf_session_get_tool (self->session) == TF_TOOL_POLYGON)
+  TfTool tool = tf_session_get_tool (self->session);
+  if (self->pointer_in
+      && (tool == TF_TOOL_POLYGON || (tool == TF_TOOL_LEAVE_OUT && !self->moved)
+          || (tool == TF_TOOL_SPLIT && n == 1)))
     {
       points[seen][0] = self->pointer_x;
       points[seen++][1] = self->pointer_y;

@@ -58,14 +58,15 @@ add_regions (TfPlateOverlay *over, TfSession *session)
 {
   GListModel *list = tf_session_get_regions (session);
   TfOutline *draft = tf_session_get_draft (session);
-  TfRegionItem *chosen = tf_session_get_region (session);
   guint n = g_list_model_get_n_items (list);
   for (guint k = 0; k < n; k++)
     {
       g_autoptr (TfRegionItem) region = g_list_model_get_item (list, k);
       const TfRow *row = tf_region_item_get_row (region);
-      TfOverlayItem item = { .stroke = row->is_hint ? TF_STROKE_HINT : TF_STROKE_MARK,
-                             .chosen = region == chosen && draft == NULL,
+      TfOverlayItem item = { .stroke = tf_region_item_is_carried (region) ? TF_STROKE_GHOST
+                                       : row->is_hint                     ? TF_STROKE_HINT
+                                                                          : TF_STROKE_MARK,
+                             .chosen = tf_session_is_chosen (session, region) && draft == NULL,
                              .verdict = (int)tf_region_item_get_verdict (region).kind };
       add_item (over, item, row->outline, tf_region_item_get_label (region),
                 tf_session_is_elsewhere (row) ? NULL : &row->measure);
@@ -75,6 +76,10 @@ add_regions (TfPlateOverlay *over, TfSession *session)
                          .verdict = (int)tf_session_get_verdict (session).kind };
   if (draft != NULL)
     add_item (over, item, draft, _ ("draft"), tf_session_get_measure (session));
+  item.verdict = -1;
+  if (tf_session_get_other_half (session) != NULL)
+    add_item (over, item, tf_session_get_other_half (session), _ ("other half"),
+              tf_session_get_other_measure (session));
 }
 
 static void

@@ -148,18 +148,44 @@ frame_changed (TfPlatePane *self)
   status_changed (self);
 }
 
+static const char *
+words_of (TfTool tool)
+{
+  switch (tool)
+    {
+    case TF_TOOL_OUTLINE:
+      return _ ("Draw round the region with the button held. Esc puts the tool away.");
+    case TF_TOOL_POLYGON:
+      return _ ("Click the corners, or move with the arrow keys and press Space. Enter closes, "
+                "Ctrl+Z takes the last one back.");
+    case TF_TOOL_BRUSH_IN:
+      return _ ("Brush in with the button held, or Space at the cross. [ and ] change its size.");
+    case TF_TOOL_BRUSH_OUT:
+      return _ ("Brush out with the button held, or Space at the cross. [ and ] change its size.");
+    case TF_TOOL_SPLIT:
+      return _ ("Draw a line right across, or click its two ends.");
+    case TF_TOOL_LEAVE_OUT:
+      return _ ("Draw round what is to be left out, or click its corners and press Enter.");
+    case TF_TOOL_CORNERS:
+      return _ ("Drag a corner; click an edge to put one in, Delete takes one away. Keys: . and , "
+                "choose, arrows move.");
+    case TF_TOOL_PIN:
+      return _ ("Click where the pole is, or go there with the arrow keys and press Space.");
+    case TF_TOOL_JOIN:
+      return _ ("Choose the one to join with: click it, or . for hints, M for marks.");
+    case TF_TOOL_NONE:
+    default:
+      return NULL;
+    }
+}
+
 static void
 choice_changed (TfPlatePane *self)
 {
-  const char *words = NULL;
-  TfTool tool = tf_session_get_tool (self->session);
-  if (tool == TF_TOOL_OUTLINE)
-    words = _ ("Draw round the region with the button held. Esc puts the tool away.");
-  else if (tool == TF_TOOL_POLYGON)
-    words
-        = _ ("Click the corners, or move with the arrow keys and press Space. Enter closes, Ctrl+Z "
-             "takes the last one back.");
-  else if (tf_session_get_draft (self->session) != NULL)
+  const char *words = words_of (tf_session_get_tool (self->session));
+  if (words == NULL && tf_session_get_other_half (self->session) != NULL)
+    words = _ ("Two halves: K keeps both, Ctrl+Z or Esc takes the split back.");
+  else if (words == NULL && tf_session_get_draft (self->session) != NULL)
     words = _ ("A draft: K keeps it as a mark, Esc discards it.");
   gtk_widget_set_visible (GTK_WIDGET (self->tool_words), words != NULL);
   gtk_label_set_label (self->tool_words, words != NULL ? words : "");

@@ -28,6 +28,13 @@ struct _TfPlate
   char *readout;
   gboolean moved; /* the drag in hand went further than a click */
   double last_x, last_y;
+  gboolean has_corner; /* a corner is chosen with the corner tool */
+  gboolean holds_corner; /* and the drag in hand moves it */
+  TfCornerPlace corner;
+  guint held_key; /* the key of the brush that is held down */
+  gint64 held_since;
+  gboolean held_used;  /* the brush was used while it was held */
+  gboolean held_again; /* the brush was in hand already: a tap puts it away */
   guint tick;
   GtkWidget *menu;    /* made when it is first opened */
   gboolean menu_open; /* the pointer counts as where it was opened */
@@ -55,6 +62,14 @@ void tf_plate_add_tools (TfPlate *plate);
 void tf_plate_class_add_menu (GtkWidgetClass *klass);
 void tf_plate_add_menu (TfPlate *plate);
 void tf_plate_place_menu (TfPlate *plate);
+/* tf-plate-hand.c */
+void tf_plate_draw_hand (TfPlate *plate, cairo_t *cr);
+gboolean tf_plate_to_sun (TfPlate *plate, double x, double y, TfVertex *vertex);
+/** tf_plate_handles_apart: least distance of two handles; tf_plate_hit_degrees: how near a press takes hold; deg */
+double tf_plate_handles_apart (TfPlate *plate);
+double tf_plate_hit_degrees (TfPlate *plate);
+gboolean tf_plate_corner_at (TfPlate *plate, double x, double y, TfCornerPlace *place);
+void tf_plate_step_corner (TfPlate *plate, int step);
 void tf_plate_update_readout (TfPlate *plate);
 
 G_END_DECLS

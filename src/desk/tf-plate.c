@@ -95,8 +95,12 @@ append_regions (TfPlate *self, GString *text)
     }
   g_string_append_printf (text, _ ("; %u marks and %u hints"), n - hints, hints);
   TfRegionItem *chosen = tf_session_get_region (self->session);
-  if (tf_session_get_draft (self->session) != NULL)
+  if (tf_session_get_other_half (self->session) != NULL)
+    g_string_append (text, _ ("; a draft in two halves not kept yet"));
+  else if (tf_session_get_draft (self->session) != NULL)
     g_string_append (text, _ ("; a draft not kept yet"));
+  else if (tf_session_get_n_chosen (self->session) > 1)
+    g_string_append_printf (text, _ ("; %u chosen"), tf_session_get_n_chosen (self->session));
   else if (chosen != NULL)
     {
       const TfMeasure *m = &tf_region_item_get_row (chosen)->measure;
@@ -168,6 +172,7 @@ choice_changed (TfPlate *self)
 {
   TfTool tool = tf_session_get_tool (self->session);
   gtk_widget_set_cursor_from_name (GTK_WIDGET (self), tool == TF_TOOL_NONE ? NULL : "crosshair");
+  self->has_corner = self->has_corner && tool == TF_TOOL_CORNERS;
   if (tf_session_get_draft (self->session) != NULL)
     self->overlay_stale = TRUE; /* its poles move when it is measured again */
   describe (self);
@@ -215,7 +220,7 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   gtk_snapshot_push_clip (snapshot, &all);
   tf_surface_append (snapshot, widget, self->picture, 0, 0, scale);
   tf_surface_append (snapshot, widget, self->overlay, dx, dy, scale / stretch);
-  if (line_n > 0 || (self->by_keys && tf_session_get_tool (self->session) == TF_TOOL_POLYGON)
+  if (line_n > 0 || tf_session_get_tool (self->session) != TF_TOOL_NONE
       || tf_plate_has_preview (self))
     {
       cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);

@@ -11,6 +11,7 @@ struct _TfRegionItem
   GObject parent;
   TfRow *row;
   TfVerdict verdict;
+  char *label;
 };
 
 G_DEFINE_FINAL_TYPE (TfRegionItem, tf_region_item, G_TYPE_OBJECT)
@@ -19,6 +20,7 @@ static void
 finalize (GObject *object)
 {
   tf_row_free (TF_REGION_ITEM (object)->row);
+  g_free (TF_REGION_ITEM (object)->label);
   G_OBJECT_CLASS (tf_region_item_parent_class)->finalize (object);
 }
 
@@ -40,6 +42,12 @@ tf_region_item_new (TfRow *row, TfVerdict verdict)
   TfRegionItem *self = g_object_new (TF_TYPE_REGION_ITEM, NULL);
   self->row = row;
   self->verdict = verdict;
+  const char *dash = strrchr (row->region, '-');
+  const char *count = dash != NULL ? dash + 1 : row->region;
+  if (tf_region_item_is_carried (self))
+    self->label = g_strdup_printf (_ ("%s carried"), count);
+  else
+    self->label = g_strdup (row->is_hint ? _ ("hint") : count);
   return self;
 }
 
@@ -58,10 +66,13 @@ tf_region_item_get_verdict (TfRegionItem *self)
 const char *
 tf_region_item_get_label (TfRegionItem *self)
 {
-  if (self->row->is_hint)
-    return _ ("hint");
-  const char *dash = strrchr (self->row->region, '-');
-  return dash != NULL ? dash + 1 : self->row->region;
+  return self->label;
+}
+
+gboolean
+tf_region_item_is_carried (TfRegionItem *self)
+{
+  return self->row->is_hint && self->row->mark < 0;
 }
 
 gboolean

@@ -22,6 +22,9 @@ const TfRow *tf_region_item_get_row (TfRegionItem *item);
 TfVerdict tf_region_item_get_verdict (TfRegionItem *item);
 /** tf_region_item_get_label: "0412" or "hint". */
 const char *tf_region_item_get_label (TfRegionItem *item);
+/** tf_region_item_is_carried: not in the ledger: an outline carried from another frame; its row is a hint's with a key below 0
+ * and its region. */
+gboolean tf_region_item_is_carried (TfRegionItem *item);
 /** tf_region_item_is: the same hint or mark. */
 gboolean tf_region_item_is (TfRegionItem *item, gint64 mark, gboolean is_hint);
 

@@ -29,6 +29,8 @@ deed_new (TfSession *self, TfDeedKind kind)
 static gboolean
 push (TfSession *self, TfDeed *deed)
 {
+  if (deed->kind != TF_DEED_UNDO && deed->kind != TF_DEED_REDO)
+    tf_session_forget_history (self);
   g_free (self->saved);
   self->saved = g_strdup (_ ("saving…"));
   tf_writer_push (self->writer, deed);
@@ -50,40 +52,163 @@ chosen_row (TfSession *self)
 
 /* -- keep, drop, withdraw -------------------------------------------------------------------- */
 
+static gboolean
+is_open_hint (TfSession *self, TfRegionItem *item)
+{
+  const TfRow *row = tf_region_item_get_row (item);
+  return row->is_hint && row->mark != self->judging;
+}
+
+/* Where the geometry was corrected a hint is to be measured anew first. */
+static gboolean
+is_keepable (TfSession *self, TfRegionItem *item)
+{
+  return is_open_hint (self, item) && !tf_session_is_elsewhere (tf_region_item_get_row (item));
+}
+
+static gboolean
+is_own_mark (TfSession *self, TfRegionItem *item)
+{
+  const TfRow *row = tf_region_item_get_row (item);
+  return !row->is_hint && row->mark != self->judging;
+}
+
+/* How many of those chosen are such. */
+static guint
+count_chosen (TfSession *self, gboolean (*is) (TfSession *, TfRegionItem *))
+{
+  g_autoptr (GPtrArray) chosen = tf_session_dup_chosen (self);
+  guint n = 0;
+  for (guint k = 0; k < chosen->len; k++)
+    n += is (self, chosen->pdata[k]) ? 1 : 0;
+  return n;
+}
+
 gboolean
 tf_session_can_keep (TfSession *self)
 {
-  if (!tf_session_is_writable (self) || self->keeping || self->line->len > 0)
+  if (!tf_session_is_writable (self) || self->keeping || self->line->len > 0 || self->brushing)
     return FALSE;
   if (self->draft != NULL)
-    return self->measured;
-  const TfRow *row = chosen_row (self);
-  return row != NULL && row->is_hint && row->mark != self->judging;
+    return self->measured && (self->other == NULL || self->other_measured);
+  return count_chosen (self, is_open_hint) > 0;
 }
 
-static void
-fill_from_hint (TfDeed *deed, const TfRow *row)
+/* A carried outline takes the hint at its place along; a hint that continues a carried region is of
+ * that region. */
+static TfDeed *
+deed_of_hint (TfSession *self, TfRegionItem *item)
 {
-  deed->hint = row->mark;
-  deed->origin = TF_MARK_KEPT;
+  const TfRow *row = tf_region_item_get_row (item);
+  TfDeed *deed = deed_new (self, TF_DEED_KEEP);
+  if (tf_region_item_is_carried (item))
+    {
+      TfRegionItem *hint = tf_session_find_hint_of_carried (self, item);
+      deed->hint = hint != NULL ? tf_region_item_get_row (hint)->mark : 0;
+      deed->region = row->region_key;
+      deed->origin = TF_MARK_CHANGED;
+    }
+  else
+    {
+      deed->hint = row->mark;
+      deed->region = tf_session_get_continued_key (self, item);
+      deed->origin = TF_MARK_KEPT;
+    }
   deed->outline = tf_outline_ref (row->outline);
   tf_measure_copy (&deed->measure, &row->measure);
   deed->method = g_strdup (row->method);
+  return deed;
 }
 
+/* What the draft takes the place of: a hint, a mark, or a carried outline, whose region it then is. */
 static void
-fill_from_draft (TfSession *self, TfDeed *deed)
+take_place (TfSession *self, TfDeed *deed, TfRegionItem *of)
 {
+  const TfRow *row = tf_region_item_get_row (of);
+  deed->origin = TF_MARK_CHANGED;
+  if (tf_region_item_is_carried (of))
+    {
+      TfRegionItem *hint = tf_session_find_hint_of_carried (self, of);
+      deed->hint = hint != NULL ? tf_region_item_get_row (hint)->mark : 0;
+      deed->region = row->region_key;
+    }
+  else if (row->is_hint)
+    {
+      deed->hint = row->mark;
+      deed->region = tf_session_get_continued_key (self, of);
+    }
+  else
+    deed->follows = row->mark;
+}
+
+static TfDeed *
+deed_of_draft (TfSession *self)
+{
+  TfDeed *deed = deed_new (self, TF_DEED_KEEP);
   deed->origin = TF_MARK_DRAWN;
   if (tf_session_get_replaces (self))
-    {
-      const TfRow *row = tf_region_item_get_row (self->replaced);
-      deed->origin = TF_MARK_CHANGED;
-      *(row->is_hint ? &deed->hint : &deed->follows) = row->mark;
-    }
+    take_place (self, deed, self->replaced);
   deed->outline = tf_outline_ref (self->draft);
   tf_measure_copy (&deed->measure, &self->measure);
   deed->method = g_strdup (self->method);
+  return deed;
+}
+
+/* The second half of a split is a region of its own. */
+static TfDeed *
+deed_of_other (TfSession *self, const TfDeed *first)
+{
+  TfDeed *deed = deed_new (self, TF_DEED_KEEP);
+  deed->origin = first->origin;
+  deed->hint = first->hint;
+  deed->outline = tf_outline_ref (self->other);
+  tf_measure_copy (&deed->measure, &self->other_measure);
+  deed->method = g_strdup (self->method);
+  return deed;
+}
+
+static TfDeed *
+deed_of_taking_away (TfSession *self, TfRegionItem *item)
+{
+  const TfRow *row = tf_region_item_get_row (item);
+  TfDeed *deed = deed_new (self, row->is_hint ? TF_DEED_DROP : TF_DEED_WITHDRAW);
+  *(row->is_hint ? &deed->hint : &deed->follows) = row->mark;
+  return deed;
+}
+
+static TfDeed *
+deed_of_drawing (TfSession *self)
+{
+  TfDeed *first = deed_of_draft (self);
+  if (self->other == NULL && self->joined->len == 0)
+    return first;
+  TfDeed *all = tf_deed_new_together (self->other != NULL ? "split" : "join", self->person);
+  all->frame = first->frame;
+  tf_deed_add (all, first);
+  if (self->other != NULL)
+    tf_deed_add (all, deed_of_other (self, first));
+  for (guint k = 0; k < self->joined->len; k++)
+    if (!tf_region_item_is_carried (self->joined->pdata[k]))
+      tf_deed_add (all, deed_of_taking_away (self, self->joined->pdata[k]));
+  return all;
+}
+
+/* The same deed for all chosen that can have it: one alone, or several as one. */
+static TfDeed *
+deed_of_chosen (TfSession *self, gboolean (*is) (TfSession *, TfRegionItem *),
+                TfDeed *(*make) (TfSession *, TfRegionItem *))
+{
+  g_autoptr (GPtrArray) chosen = tf_session_dup_chosen (self);
+  TfDeed *all = tf_deed_new_together ("several", self->person);
+  all->frame = tf_frame_item_get_row (self->frame_item)->id;
+  for (guint k = 0; k < chosen->len; k++)
+    if (is (self, chosen->pdata[k]))
+      tf_deed_add (all, make (self, chosen->pdata[k]));
+  if (all->parts->len > 1)
+    return all;
+  TfDeed *only = all->parts->len == 1 ? g_ptr_array_steal_index (all->parts, 0) : NULL;
+  tf_deed_free (all);
+  return only;
 }
 
 gboolean
@@ -92,7 +217,7 @@ tf_session_keep (TfSession *self)
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
   if (!tf_session_can_keep (self) || !has_person (self))
     return FALSE;
-  if (self->draft == NULL && tf_session_is_elsewhere (chosen_row (self)))
+  if (self->draft == NULL && self->also->len == 0 && tf_session_is_elsewhere (chosen_row (self)))
     {
       g_autoptr (TfRegionItem) hint = g_object_ref (self->region);
       tf_session_set_draft (self, chosen_row (self)->outline);
@@ -102,26 +227,40 @@ tf_session_keep (TfSession *self)
                                "anew as a draft. K keeps it."));
       return TRUE;
     }
-  TfDeed *deed = deed_new (self, TF_DEED_KEEP);
   if (self->draft != NULL)
     {
-      fill_from_draft (self, deed);
       self->keeping = TRUE;
+      return push (self, deed_of_drawing (self));
     }
-  else
-    {
-      fill_from_hint (deed, chosen_row (self));
-      self->judging = deed->hint;
-    }
+  TfDeed *deed = deed_of_chosen (self, is_keepable, deed_of_hint);
+  if (deed == NULL)
+    return FALSE;
+  self->judging = chosen_row (self)->mark;
   return push (self, deed);
 }
 
 gboolean
 tf_session_can_drop (TfSession *self)
 {
-  const TfRow *row = chosen_row (self);
-  return tf_session_is_writable (self) && self->draft == NULL && row != NULL && row->is_hint
-         && row->mark != self->judging;
+  return tf_session_is_writable (self) && self->draft == NULL && self->frame_item != NULL
+         && count_chosen (self, is_open_hint) > 0;
+}
+
+static gboolean
+is_droppable (TfSession *self, TfRegionItem *item)
+{
+  return is_open_hint (self, item) && !tf_region_item_is_carried (item);
+}
+
+/* Carried outlines are only offers: they go without a deed. */
+static gboolean
+drop_carried (TfSession *self)
+{
+  g_autoptr (GPtrArray) chosen = tf_session_dup_chosen (self);
+  gboolean some = FALSE;
+  for (guint k = 0; k < chosen->len; k++)
+    some = tf_session_drop_carried (self, chosen->pdata[k]) || some;
+  return some;
 }
 
 gboolean
@@ -130,9 +269,16 @@ tf_session_drop (TfSession *self)
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
   if (!tf_session_can_drop (self) || !has_person (self))
     return FALSE;
-  TfDeed *deed = deed_new (self, TF_DEED_DROP);
-  self->judging = deed->hint = chosen_row (self)->mark;
-  return push (self, deed);
+  TfDeed *deed = deed_of_chosen (self, is_droppable, deed_of_taking_away);
+  gboolean offers = drop_carried (self);
+  if (deed != NULL)
+    {
+      self->judging = chosen_row (self)->mark;
+      return push (self, deed);
+    }
+  self->want_next_hint = offers;
+  tf_session_refresh (self, FALSE);
+  return offers;
 }
 
 gboolean
@@ -145,7 +291,8 @@ tf_session_can_describe (TfSession *self)
 gboolean
 tf_session_can_withdraw (TfSession *self)
 {
-  return tf_session_can_describe (self) && chosen_row (self)->mark != self->judging;
+  return tf_session_is_writable (self) && self->draft == NULL && self->frame_item != NULL
+         && count_chosen (self, is_own_mark) > 0;
 }
 
 gboolean
@@ -154,8 +301,8 @@ tf_session_withdraw (TfSession *self)
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
   if (!tf_session_can_withdraw (self) || !has_person (self))
     return FALSE;
-  TfDeed *deed = deed_new (self, TF_DEED_WITHDRAW);
-  self->judging = deed->follows = chosen_row (self)->mark;
+  TfDeed *deed = deed_of_chosen (self, is_own_mark, deed_of_taking_away);
+  self->judging = chosen_row (self)->mark;
   return push (self, deed);
 }
 
@@ -211,44 +358,108 @@ tf_session_forget_hoped (TfSession *self)
   g_clear_pointer (&self->class_hoped, g_free);
 }
 
-gboolean
-tf_session_set_class (TfSession *self, const char *key)
+/* NULL when nothing would change. */
+static TfDeed *
+deed_of_class (TfSession *self, TfRegionItem *item, const char *key)
 {
-  g_return_val_if_fail (TF_IS_SESSION (self) && key != NULL, FALSE);
-  if (!tf_session_can_describe (self))
-    return FALSE;
-  const TfRow *row = chosen_row (self);
+  const TfRow *row = tf_region_item_get_row (item);
   g_autofree char *text = class_after (class_now (self, row), key);
   if (strcmp (text, "αδ") == 0 || strcmp (text, "δ") == 0)
     {
       tf_session_say (self, _ ("δ needs two polarities: give β, βγ or γ first."));
-      return FALSE;
+      return NULL;
     }
-  if (strcmp (text, class_now (self, row)) == 0 || !has_person (self))
-    return FALSE;
+  if (strcmp (text, class_now (self, row)) == 0)
+    return NULL;
   TfDeed *deed = deed_new (self, TF_DEED_CLASS);
-  deed->region = self->class_region = row->region_key;
-  g_free (self->class_hoped);
-  self->class_hoped = g_strdup (text);
+  deed->region = row->region_key;
   deed->text = g_steal_pointer (&text);
+  return deed;
+}
+
+static void
+hope_for (TfSession *self, const TfDeed *deed)
+{
+  self->class_region = deed->region;
+  g_free (self->class_hoped);
+  self->class_hoped = g_strdup (deed->text);
+}
+
+gboolean
+tf_session_set_class (TfSession *self, const char *key)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && key != NULL, FALSE);
+  if (!tf_session_can_describe (self) || !has_person (self))
+    return FALSE;
+  g_autoptr (GPtrArray) chosen = tf_session_dup_chosen (self);
+  TfDeed *all = tf_deed_new_together ("several", self->person);
+  for (guint k = 0; k < chosen->len; k++)
+    {
+      TfDeed *deed = tf_region_item_get_row (chosen->pdata[k])->is_hint
+                         ? NULL
+                         : deed_of_class (self, chosen->pdata[k], key);
+      if (deed != NULL)
+        tf_deed_add (all, deed);
+    }
+  if (all->parts->len > 1)
+    return push (self, all);
+  TfDeed *only = all->parts->len == 1 ? g_ptr_array_steal_index (all->parts, 0) : NULL;
+  tf_deed_free (all);
+  if (only == NULL)
+    return FALSE;
+  hope_for (self, only);
+  return push (self, only);
+}
+
+static gboolean
+set_fact_of (TfSession *self, TfDeedKind kind, TfRegionItem *region, const char *text)
+{
+  const TfRow *row = tf_region_item_get_row (region);
+  const char *now = kind == TF_DEED_LABEL ? row->label : row->external;
+  if (!tf_session_is_writable (self) || row->is_hint || strcmp (now, text) == 0
+      || !has_person (self))
+    return FALSE;
+  TfDeed *deed = deed_new (self, kind);
+  deed->region = row->region_key;
+  deed->text = g_strdup (text);
   return push (self, deed);
+}
+
+gboolean
+tf_session_set_label_of (TfSession *self, TfRegionItem *region, const char *text)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && TF_IS_REGION_ITEM (region) && text != NULL, FALSE);
+  return set_fact_of (self, TF_DEED_LABEL, region, text);
+}
+
+gboolean
+tf_session_set_external_of (TfSession *self, TfRegionItem *region, const char *text)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && TF_IS_REGION_ITEM (region) && text != NULL, FALSE);
+  return set_fact_of (self, TF_DEED_EXTERNAL, region, text);
 }
 
 /* -- undo and redo --------------------------------------------------------------------------- */
 
+static gboolean
+has_corner (TfSession *self)
+{
+  return (self->tool == TF_TOOL_POLYGON || self->tool == TF_TOOL_LEAVE_OUT) && self->line->len > 0;
+}
+
+/* First the corner just set, then what was done to the draft, then deeds. */
 gboolean
 tf_session_can_undo (TfSession *self)
 {
-  if (self->tool == TF_TOOL_POLYGON && self->line->len > 0)
-    return TRUE;
-  return tf_session_is_writable (self) && self->person != NULL && self->can_undo;
+  return has_corner (self) || tf_session_can_step_back (self, FALSE)
+         || (tf_session_is_writable (self) && self->person != NULL && self->can_undo);
 }
 
 gboolean
 tf_session_undo (TfSession *self)
 {
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
-  if (tf_session_take_back_corner (self))
+  if (tf_session_take_back_corner (self) || tf_session_step_back (self, FALSE))
     return TRUE;
   if (!tf_session_can_undo (self))
     return FALSE;
@@ -258,13 +469,16 @@ tf_session_undo (TfSession *self)
 gboolean
 tf_session_can_redo (TfSession *self)
 {
-  return tf_session_is_writable (self) && self->person != NULL && self->can_redo;
+  return tf_session_can_step_back (self, TRUE)
+         || (tf_session_is_writable (self) && self->person != NULL && self->can_redo);
 }
 
 gboolean
 tf_session_redo (TfSession *self)
 {
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
+  if (tf_session_step_back (self, TRUE))
+    return TRUE;
   return tf_session_can_redo (self) && push (self, deed_new (self, TF_DEED_REDO));
 }
 
@@ -278,6 +492,16 @@ say_undone (TfSession *self, const TfDeed *deed)
       = g_strdup_printf (deed->kind == TF_DEED_UNDO ? _ ("Undone: %s %s") : _ ("Done again: %s %s"),
                          tf_deed_word (undone->what), undone->region != NULL ? undone->region : "");
   tf_session_say (self, g_strchomp (text));
+}
+
+/* What is undone elsewhere is shown where it was. */
+static void
+go_where_undone (TfSession *self, const TfDeed *deed)
+{
+  TfFrameItem *item
+      = deed->undone.frame != 0 ? tf_session_find_frame (self, deed->undone.frame) : NULL;
+  if (item != NULL && item != self->frame_item && deed->frame != deed->undone.frame)
+    tf_session_choose_frame (self, item);
 }
 
 static void
@@ -305,7 +529,7 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
     }
   if (deed->kind == TF_DEED_DIVIDE)
     tf_session_divide_saved (self);
-  if (deed->kind == TF_DEED_KEEP)
+  if (deed->kind == TF_DEED_KEEP || deed->mark != 0)
     after_keep (self, deed);
   else if (deed->kind == TF_DEED_DROP)
     self->want_next_hint = TRUE;
@@ -313,6 +537,7 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
     {
       self->want_new = TRUE;
       say_undone (self, deed);
+      go_where_undone (self, deed);
     }
   g_free (self->saved);
   self->saved = g_strdup (_ ("saved"));
@@ -323,8 +548,7 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
 static void
 refused (TfWriter *writer, TfDeed *deed, const char *message, TfSession *self)
 {
-  if (deed->kind == TF_DEED_KEEP)
-    self->keeping = FALSE;
+  self->keeping = FALSE;
   if (deed->kind == TF_DEED_DIVIDE)
     tf_session_divide_saved (self);
   self->judging = 0;

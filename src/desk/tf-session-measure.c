@@ -100,6 +100,17 @@ measure_now (TfSession *self, const TfOutline *outline)
   self->slow = self->slow || thread_ms () - start > quick_ms;
 }
 
+static void
+measure_half (TfSession *self, const TfOutline *half)
+{
+  TfMeasureParams params = self->params;
+  params.outline_term = FALSE;
+  g_autoptr (TfMask) mask = tf_mask_new (self->frame, half, params.mu_min, (guint)params.law);
+  tf_measure_clear (&self->other_measure);
+  self->other_measured
+      = tf_measure_masked (&self->other_measure, self->frame, mask, NULL, &params, NULL);
+}
+
 /* -- by a worker ------------------------------------------------------------------------------ */
 
 static void
@@ -121,11 +132,13 @@ static void
 live_done (TfSession *self, const Order *order, TfMeasure *measure, const GError *error)
 {
   self->live_busy = FALSE;
-  if (self->line->len == 0 || order->frame != self->frame)
+  if ((self->line->len == 0 && !self->brushing) || order->frame != self->frame)
     return; /* finished or put away meanwhile */
   take_measure (self, measure, error);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
-  if (order->n_line != self->line->len)
+  if (self->brushing && order->outline != self->draft)
+    tf_session_measure_live (self, self->draft);
+  else if (!self->brushing && order->n_line != self->line->len)
     tf_session_measure_line (self);
 }
 
@@ -165,8 +178,8 @@ order_measure (TfSession *self, TfOutline *outline, gboolean live)
 
 /* -- the line and the draft ------------------------------------------------------------------- */
 
-static void
-measure_outline (TfSession *self, TfOutline *outline)
+void
+tf_session_measure_live (TfSession *self, TfOutline *outline)
 {
   if (!self->slow)
     measure_now (self, outline);
@@ -177,26 +190,70 @@ measure_outline (TfSession *self, TfOutline *outline)
     }
 }
 
+/* The outline that the line in hand would make. */
+static TfOutline *
+outline_of_line (TfSession *self, GError **error)
+{
+  const TfVertex *line = (const TfVertex *)(gconstpointer)self->line->data;
+  TfOutline *base = tf_session_get_base (self);
+  if (self->line->len < MIN_VERTICES)
+    return NULL;
+  if (self->tool == TF_TOOL_LEAVE_OUT && base != NULL)
+    return tf_outline_with_ring (base, line, self->line->len, TRUE, error);
+  return tf_outline_new (tf_frame_get_info (self->frame)->time, line, self->line->len, error);
+}
+
 void
 tf_session_measure_line (TfSession *self)
 {
   g_return_if_fail (TF_IS_SESSION (self));
-  if (self->frame == NULL || (self->line->len == 0 && self->draft != NULL))
-    return; /* the line was finished meanwhile */
-  TfTime time = tf_frame_get_info (self->frame)->time;
-  const TfVertex *line = (const TfVertex *)(gconstpointer)self->line->data;
-  g_autoptr (GError) error = NULL;
-  g_autoptr (TfOutline) outline = NULL;
-  if (self->line->len >= MIN_VERTICES)
-    outline = tf_outline_new (time, line, self->line->len, &error);
-  if (outline != NULL)
-    measure_outline (self, outline);
-  else
+  if (self->brushing && self->draft != NULL)
     {
-      tf_session_forget_measure (self);
-      say_problem (self, error != NULL ? error->message : _ ("Go on round the region."));
+      tf_session_measure_live (self, self->draft);
+      tf_session_emit (self, TF_SIGNAL_CHOICE);
+    }
+  if (self->frame == NULL || self->brushing || (self->line->len == 0 && self->draft != NULL))
+    return; /* the line was finished meanwhile */
+  const TfVertex *line = (const TfVertex *)(gconstpointer)self->line->data;
+  if (self->tool == TF_TOOL_SPLIT && self->line->len > 1)
+    tf_session_measure_split (self, line[0], line[self->line->len - 1]);
+  else if (self->tool != TF_TOOL_SPLIT)
+    {
+      g_autoptr (GError) error = NULL;
+      g_autoptr (TfOutline) outline = outline_of_line (self, &error);
+      if (outline != NULL)
+        tf_session_measure_live (self, outline);
+      else
+        {
+          tf_session_forget_measure (self);
+          say_problem (self, error != NULL ? error->message : _ ("Go on round the region."));
+        }
     }
   tf_session_emit (self, TF_SIGNAL_CHOICE);
+}
+
+/* Both halves of what the line in hand would part, at once. */
+void
+tf_session_measure_split (TfSession *self, TfVertex a, TfVertex b)
+{
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfOutline) one = NULL, other = NULL;
+  TfOutline *base = tf_session_get_base (self);
+  if (base == NULL || !tf_outline_split (base, a, b, &one, &other, &error))
+    {
+      tf_session_forget_measure (self);
+      self->other_measured = FALSE;
+      say_problem (self, error != NULL ? error->message : _ ("Draw right across the outline."));
+      return;
+    }
+  measure_now (self, one);
+  measure_half (self, other);
+}
+
+void
+tf_session_measure_other (TfSession *self)
+{
+  measure_half (self, self->other);
 }
 
 void

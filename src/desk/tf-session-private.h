@@ -119,6 +119,18 @@ struct _TfSession
   char *draft_text;      /* came before the pixels */
   gboolean slow;         /* the line in hand takes too long for the main thread */
   gboolean live_busy;    /* a worker measures the line in hand */
+  TfOutline *other;      /* the second half of a split */
+  TfMeasure other_measure;
+  gboolean other_measured;
+  GPtrArray *joined;     /* TfRegionItem: that a join takes the place of, besides replaced */
+  GHashTable *histories; /* of drafts, by the frame's id */
+  double brush_deg;
+  gboolean brushing; /* a stroke is in hand */
+  TfOutline *stroke_before;
+  TfVertex stroke_last;
+  GPtrArray *also;    /* TfRegionItem: chosen besides region */
+  GPtrArray *carried; /* TfRegionItem: offered on carried_frame */
+  gint64 carried_frame;
   TfMeasure measure;     /* of the line or the draft, when measured */
   gboolean measured;
   char *measure_problem;
@@ -158,6 +170,30 @@ void tf_session_drop_draft (TfSession *session);
 void tf_session_forget_measure (TfSession *session);
 /** tf_session_measure_draft: at once, and by a worker with the outline term. */
 void tf_session_measure_draft (TfSession *session);
+/** tf_session_measure_live: at once or by a worker, without the outline term. */
+void tf_session_measure_live (TfSession *session, TfOutline *outline);
+/** tf_session_measure_other: the second half, at once. */
+void tf_session_measure_other (TfSession *session);
+/* tf-session-hand.c */
+void tf_session_init_hand (TfSession *session);
+void tf_session_clear_hand (TfSession *session);
+/** tf_session_remember: the draft as it is now can be come back to. */
+void tf_session_remember (TfSession *session);
+void tf_session_forget_history (TfSession *session);
+gboolean tf_session_can_step_back (TfSession *session, gboolean forward);
+gboolean tf_session_step_back (TfSession *session, gboolean forward);
+/** tf_session_change_draft: (transfer full) @outline, @other (nullable): the draft is this now, at rest; the chosen one is what it takes
+ * the place of when there was no draft. */
+void tf_session_change_draft (TfSession *session, TfOutline *outline, TfOutline *other);
+void tf_session_measure_split (TfSession *session, TfVertex a, TfVertex b);
+/* tf-session-choice.c */
+void tf_session_choose_also_again (TfSession *session);
+/* tf-session-carry.c */
+void tf_session_add_carried (TfSession *session, GPtrArray *items);
+/** tf_session_drop_carried: FALSE when it is not a carried one */
+gboolean tf_session_drop_carried (TfSession *session, TfRegionItem *item);
+TfRegionItem *tf_session_find_hint_of_carried (TfSession *session, TfRegionItem *carried);
+gint64 tf_session_get_continued_key (TfSession *session, TfRegionItem *hint);
 void tf_session_update_pick (TfSession *session);
 /** tf_session_restore_draft: from the ledger's text */
 void tf_session_restore_draft (TfSession *session, const char *text);

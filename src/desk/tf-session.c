@@ -63,6 +63,7 @@ finalize (GObject *object)
   tf_session_laws_finalize (self);
   g_clear_pointer (&self->pick_frames, g_hash_table_unref);
   g_clear_pointer (&self->draft, tf_outline_unref);
+  tf_session_clear_hand (self);
   tf_measure_clear (&self->measure);
   g_array_unref (self->line);
   g_array_unref (self->points);
@@ -124,6 +125,7 @@ tf_session_init (TfSession *self)
   self->view.width = self->view.height = 1;
   self->view.zoom = 1;
   tf_session_update_pick (self);
+  tf_session_init_hand (self);
   tf_session_init_overlays (self);
   tf_session_init_witness (self);
 }
@@ -194,8 +196,18 @@ tf_session_choose_region (TfSession *self, TfRegionItem *item)
 {
   g_return_if_fail (TF_IS_SESSION (self));
   self->want_mark = 0;
-  if (!g_set_object (&self->region, item))
+  if (self->tool == TF_TOOL_JOIN && item != NULL && item != self->region)
+    {
+      tf_session_toggle_region (self, item);
+      tf_session_join (self);
+      return;
+    }
+  gboolean several = self->also->len > 0;
+  g_ptr_array_set_size (self->also, 0);
+  if (!g_set_object (&self->region, item) && !several)
     return;
+  if (several)
+    tf_session_emit (self, TF_SIGNAL_REGIONS); /* drawn thick no more */
   g_clear_pointer (&self->saved, g_free);
   tf_session_judge_choice (self);
   if (item != NULL && self->view.look == TF_LOOK_CLOSE && self->draft == NULL)
@@ -279,8 +291,10 @@ tf_session_replace_regions (TfSession *self, GPtrArray *rows)
   guint old = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
   TfRegionItem *came_back = self->want_new ? find_new (self, items) : NULL;
   self->want_new = self->want_new && self->refresh_again;
+  tf_session_add_carried (self, items);
   g_list_store_splice (self->regions, 0, old, items->pdata, items->len);
   choose_again (self, came_back);
+  tf_session_choose_also_again (self);
   self->judging = 0;
   tf_session_judge_choice (self);
   tf_session_emit (self, TF_SIGNAL_REGIONS);

@@ -36,6 +36,13 @@ typedef enum
   TF_TOOL_NONE,
   TF_TOOL_OUTLINE, /* freehand */
   TF_TOOL_POLYGON, /* corner by corner */
+  TF_TOOL_BRUSH_IN,
+  TF_TOOL_BRUSH_OUT,
+  TF_TOOL_SPLIT,     /* a line from edge to edge */
+  TF_TOOL_LEAVE_OUT, /* freehand or corner by corner, round what is left out */
+  TF_TOOL_CORNERS,   /* corners moved, put in, taken away */
+  TF_TOOL_PIN,       /* a place for a pole */
+  TF_TOOL_JOIN,      /* the next one chosen is joined with the chosen one */
 } TfTool;
 
 #define TF_TYPE_SESSION (tf_session_get_type ())
@@ -207,6 +214,63 @@ void tf_session_choose_region (TfSession *session, TfRegionItem *item);
 /** tf_session_step_hint: FALSE when there is none */
 gboolean tf_session_step_hint (TfSession *session, int step);
 
+/* -- several chosen, and carried from another frame (tf-session-choice.c, tf-session-carry.c) */
+/** tf_session_is_chosen: the chosen one or one of those chosen with it */
+gboolean tf_session_is_chosen (TfSession *session, TfRegionItem *item);
+guint tf_session_get_n_chosen (TfSession *session);
+/** tf_session_toggle_region: to those chosen, or away from them */
+void tf_session_toggle_region (TfSession *session, TfRegionItem *item);
+/** tf_session_extend_hint: the next hint is chosen too; FALSE when there is none */
+gboolean tf_session_extend_hint (TfSession *session, int step);
+/** tf_session_choose_all: all hints, or all marks when no hint waits */
+void tf_session_choose_all (TfSession *session);
+gboolean tf_session_step_mark (TfSession *session, int step);
+/** tf_session_dup_chosen: (element-type TfRegionItem): the chosen one first */
+GPtrArray *tf_session_dup_chosen (TfSession *session);
+/** tf_session_join: those chosen become one draft; with one chosen the tool waits for the next. */
+gboolean tf_session_can_join (TfSession *session);
+gboolean tf_session_join (TfSession *session);
+/** tf_session_carry: offers the regions of the last frame before this one that has marks, carried to this one. */
+gboolean tf_session_can_carry (TfSession *session);
+gboolean tf_session_carry (TfSession *session);
+/** tf_session_carry_on: goes to the next frame and offers the chosen regions there. */
+gboolean tf_session_can_carry_on (TfSession *session);
+gboolean tf_session_carry_on (TfSession *session);
+/** tf_session_get_continued: (nullable): number of the carried region that a hint continues */
+const char *tf_session_get_continued (TfSession *session, TfRegionItem *hint);
+
+/* -- the hand on an outline (tf-session-hand.c): of the draft, else of the chosen hint or mark, which it then takes the place of */
+/** tf_session_get_base: (nullable): what the tools work on */
+TfOutline *tf_session_get_base (TfSession *session);
+double tf_session_get_brush (TfSession *session);
+void tf_session_set_brush (TfSession *session, double radius_deg);
+void tf_session_brush_begin (TfSession *session, double lon_deg, double lat_deg);
+void tf_session_brush_to (TfSession *session, double lon_deg, double lat_deg);
+void tf_session_brush_end (TfSession *session);
+/** tf_session_get_other_half: (nullable): the second half of a split in hand, with its measure */
+TfOutline *tf_session_get_other_half (TfSession *session);
+const TfMeasure *tf_session_get_other_measure (TfSession *session);
+/** tf_session_split: the base along a line, as two drafts. FALSE with a message when it does not cross. */
+gboolean tf_session_split (TfSession *session, TfVertex a, TfVertex b);
+gboolean tf_session_leave_out (TfSession *session, const TfVertex *ring, guint n);
+/** tf_session_pin_pole: @polarity 1, -1; 0 takes the pins away */
+gboolean tf_session_pin_pole (TfSession *session, int polarity, double lon_deg, double lat_deg, const char *reason);
+
+/** TfCornerPlace: one corner of the base */
+typedef struct
+{
+  guint ring, corner;
+  gboolean left_out;
+} TfCornerPlace;
+/** tf_session_list_corners: (element-type TfCornerPlace): those that stand far enough from each other for a hand, @apart_deg */
+GArray *tf_session_list_corners (TfSession *session, double apart_deg);
+TfVertex tf_session_get_corner (TfSession *session, TfCornerPlace place);
+/** tf_session_move_corner: neighbours nearer than @apart_deg that have no handle of their own go along; @done: the hand let go */
+void tf_session_move_corner (TfSession *session, TfCornerPlace place, TfVertex to, double apart_deg, gboolean done);
+/** tf_session_insert_corner: in the edge nearest to a place; FALSE further than @within_deg away. @place: (out): where it stands now */
+gboolean tf_session_insert_corner (TfSession *session, TfVertex at, double within_deg, TfCornerPlace *place);
+gboolean tf_session_remove_corner (TfSession *session, TfCornerPlace place);
+
 /* -- drawing (tf-session-draft.c) */
 TfTool tf_session_get_tool (TfSession *session);
 void tf_session_set_tool (TfSession *session, TfTool tool);
@@ -257,6 +321,9 @@ gboolean tf_session_set_note (TfSession *session, const char *text);
 /** tf_session_set_note_of: the note of a mark that need not be the chosen one any more. */
 gboolean tf_session_set_note_of (TfSession *session, TfRegionItem *region, const char *text);
 gboolean tf_session_set_class (TfSession *session, const char *text);
+/** tf_session_set_label_of, tf_session_set_external_of: facts about the region of a mark */
+gboolean tf_session_set_label_of (TfSession *session, TfRegionItem *region, const char *text);
+gboolean tf_session_set_external_of (TfSession *session, TfRegionItem *region, const char *text);
 gboolean tf_session_can_undo (TfSession *session);
 gboolean tf_session_undo (TfSession *session);
 gboolean tf_session_can_redo (TfSession *session);
@@ -295,6 +362,12 @@ gboolean tf_session_bring (TfSession *session, const char *path);
 gboolean tf_session_write_shift (TfSession *session, const char *path);
 gboolean tf_session_can_write_region (TfSession *session);
 gboolean tf_session_write_region (TfSession *session, const char *path);
+
+/* -- the journal (tf-session-journal.c) */
+/** tf_session_read_journal: newest first; @region: 0: all of it */
+void tf_session_read_journal (TfSession *session, gint64 region, GAsyncReadyCallback done, gpointer data);
+/** tf_session_read_journal_finish: (transfer full) (element-type TfJournalEntry) */
+GPtrArray *tf_session_read_journal_finish (GAsyncResult *result, GError **error);
 
 /* -- the wings (tf-session-wings.c) */
 /** tf_session_get_dots: (element-type TfWingsDot): those shown; @n_hidden: (out): hints not shown

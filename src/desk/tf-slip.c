@@ -17,7 +17,7 @@ struct _TfSlip
 {
   GtkWidget parent;
   GtkStack *stack;
-  GtkLabel *title, *place, *origin, *longitude, *saved, *problem, *verdict, *verdict_why, *cautions;
+  GtkLabel *title, *place, *origin, *longitude, *saved, *problem, *verdict, *verdict_why, *cautions, *also;
   TfDialView *dial;
   TfVerdictSign *sign;
   GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box;
@@ -26,10 +26,12 @@ struct _TfSlip
   TfSlipRow *row[TF_N_LINES];
   GtkToggleButton *class_alpha, *class_beta, *class_beta_gamma, *class_gamma, *class_delta;
   GtkTextView *note;
+  GtkEntry *label_entry, *external_entry;
   TfSlipFrame *frame_page;
   TfSession *session;
   TfRegionItem *noted; /* whose note stands in the entry */
   char *note_given;    /* what was already given to be kept for it, or NULL */
+  char *label_given, *external_given;
   gboolean setting;
   char *joy_name; /* under the dial */
 };
@@ -90,6 +92,53 @@ draft_title (TfSlip *self)
     }
 }
 
+static char *
+dup_hint_origin (TfSlip *self, TfRegionItem *region)
+{
+  const TfRow *row = tf_region_item_get_row (region);
+  const char *continued = tf_session_get_continued (self->session, region);
+  if (tf_region_item_is_carried (region))
+    return g_strdup (_ ("carried from a frame before · nobody has judged it"));
+  if (continued != NULL)
+    return g_strdup_printf (_ ("a hint · continues %s"), continued);
+  return g_strdup (row->unipolar ? _ ("a hint of one polarity · nobody has judged it")
+                                 : _ ("a hint · nobody has judged it"));
+}
+
+/* What goes with it: the other half of a split, others chosen, a pinned pole. */
+static void
+append_half (GString *text, const TfMeasure *m)
+{
+  g_autofree char *tilt = tf_words_dup_signed (m->axis_tilt_deg, 1),
+                  *noise = tf_words_dup_number (m->tilt_terms.total, 1),
+                  *flux = tf_chart_dup_flux (m->flux_unsigned_mx);
+  g_string_append_printf (text, _ ("Other half: tilt %s° ± %s°, flux %s\n"), tilt, noise, flux);
+}
+
+static void
+show_also (TfSlip *self, gboolean drawing)
+{
+  GString *text = g_string_new (NULL);
+  const TfMeasure *half = drawing ? tf_session_get_other_measure (self->session) : NULL;
+  TfOutline *base = tf_session_get_base (self->session);
+  guint n = tf_session_get_n_chosen (self->session);
+  if (half != NULL)
+    append_half (text, half);
+  if (!drawing && n > 1)
+    g_string_append_printf (
+        text, _ ("%u chosen: Keep, Drop, Withdraw and the class are for all of them\n"), n);
+  for (guint k = 0; base != NULL && k < tf_outline_get_n_pins (base); k++)
+    {
+      const TfPinnedPole *pin = tf_outline_get_pin (base, k);
+      g_string_append_printf (text, pin->polarity > 0 ? _ ("Positive pole pinned: %s (%s)\n")
+                                                      : _ ("Negative pole pinned: %s (%s)\n"),
+                              pin->reason != NULL ? pin->reason : "—",
+                              pin->person != NULL ? pin->person : "—");
+    }
+  set_label (self->also, g_strchomp (text->str));
+  g_string_free (text, TRUE);
+}
+
 static void
 show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure *measure)
 {
@@ -102,13 +151,12 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
                            ? _ ("not kept yet")
                            : _ ("close the line to make a draft"));
   else if (row->is_hint)
-    origin = g_strdup (row->unipolar ? _ ("a hint of one polarity · nobody has judged it")
-                                     : _ ("a hint · nobody has judged it"));
+    origin = dup_hint_origin (self, region);
   else
     origin = g_strdup_printf ("%s · %s", origin_words (row->origin), row->person);
   set_label (self->title, row == NULL    ? draft_title (self)
-                          : row->is_hint ? _ ("Hint")
-                                         : row->region);
+                          : row->region[0] == '\0' ? _ ("Hint")
+                                                   : row->region);
   set_label (self->place, place);
   set_label (self->longitude, longitude);
   set_label (self->origin, origin);
@@ -117,6 +165,7 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
   gtk_widget_set_visible (self->discard, drawing);
   gtk_widget_set_visible (self->withdraw, row != NULL && !row->is_hint);
   show_replaces (self);
+  show_also (self, drawing);
 }
 
 /* -- dial, verdict, numbers ------------------------------------------------------------------ */
@@ -229,14 +278,68 @@ leave_note (TfSlip *self)
     }
 }
 
+/* -- label and external number ---------------------------------------------------------------- */
+
+static char *
+dup_entry (GtkEntry *entry)
+{
+  return g_strstrip (g_strdup (gtk_editable_get_text (GTK_EDITABLE (entry))));
+}
+
+/* Kept for the region they were written for. */
+static void
+leave_facts (TfSlip *self)
+{
+  if (self->noted == NULL || self->session == NULL || self->setting)
+    return;
+  g_autofree char *label = dup_entry (self->label_entry), *number = dup_entry (self->external_entry);
+  if (g_strcmp0 (label, self->label_given) != 0)
+    {
+      tf_session_set_label_of (self->session, self->noted, label);
+      g_free (self->label_given);
+      self->label_given = g_steal_pointer (&label);
+    }
+  if (g_strcmp0 (number, self->external_given) != 0)
+    {
+      tf_session_set_external_of (self->session, self->noted, number);
+      g_free (self->external_given);
+      self->external_given = g_steal_pointer (&number);
+    }
+}
+
+static void
+show_fact (GtkEntry *entry, char **given, const char *text, gboolean same)
+{
+  GtkWidget *inner = GTK_WIDGET (gtk_editable_get_delegate (GTK_EDITABLE (entry)));
+  if (same && inner != NULL && gtk_widget_has_focus (inner))
+    return; /* someone is writing */
+  g_free (*given);
+  *given = g_strdup (text);
+  if (g_strcmp0 (gtk_editable_get_text (GTK_EDITABLE (entry)), text) != 0)
+    gtk_editable_set_text (GTK_EDITABLE (entry), text);
+}
+
+static void
+facts_left (TfSlip *self)
+{
+  leave_facts (self);
+}
+
 static void
 show_note (TfSlip *self, TfRegionItem *region)
 {
   const TfRow *row = tf_region_item_get_row (region);
   gboolean same = self->noted != NULL && tf_region_item_is (self->noted, row->mark, row->is_hint);
+  self->setting = FALSE;
   if (!same)
-    leave_note (self);
+    {
+      leave_note (self);
+      leave_facts (self);
+    }
+  self->setting = TRUE;
   g_set_object (&self->noted, region);
+  show_fact (self->label_entry, &self->label_given, row->label, same);
+  show_fact (self->external_entry, &self->external_given, row->external, same);
   if (same && gtk_widget_has_focus (GTK_WIDGET (self->note)))
     return; /* someone is writing */
   g_clear_pointer (&self->note_given, g_free);
@@ -249,6 +352,7 @@ static void
 forget_note (TfSlip *self)
 {
   leave_note (self);
+  leave_facts (self);
   g_clear_object (&self->noted);
   g_clear_pointer (&self->note_given, g_free);
 }
@@ -362,6 +466,8 @@ finalize (GObject *object)
 {
   g_free (TF_SLIP (object)->joy_name);
   g_free (TF_SLIP (object)->note_given);
+  g_free (TF_SLIP (object)->label_given);
+  g_free (TF_SLIP (object)->external_given);
   G_OBJECT_CLASS (tf_slip_parent_class)->finalize (object);
 }
 
@@ -397,6 +503,9 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfSlip, class_gamma);
   gtk_widget_class_bind_template_child (widget, TfSlip, class_delta);
   gtk_widget_class_bind_template_child (widget, TfSlip, note);
+  gtk_widget_class_bind_template_child (widget, TfSlip, also);
+  gtk_widget_class_bind_template_child (widget, TfSlip, label_entry);
+  gtk_widget_class_bind_template_child (widget, TfSlip, external_entry);
   gtk_widget_class_bind_template_child (widget, TfSlip, frame_page);
 }
 
@@ -415,6 +524,7 @@ tf_slip_class_init (TfSlipClass *klass)
   bind_children (widget);
   gtk_widget_class_bind_template_callback (widget, replaces_toggled);
   gtk_widget_class_bind_template_callback (widget, note_left);
+  gtk_widget_class_bind_template_callback (widget, facts_left);
   gtk_widget_class_bind_template_callback (widget, note_key);
 }
 

@@ -232,6 +232,7 @@ tf_window_add_actions (TfWindow *self)
   tf_window_add_plate_actions (self);
   tf_window_add_frame_actions (self);
   tf_window_add_list_actions (self);
+  tf_window_add_tool_actions (self);
 }
 
 static void
@@ -305,7 +306,8 @@ tf_window_update_actions (TfWindow *self)
   enable (self, "note", tf_session_can_describe (session));
   enable (self, "undo", tf_session_can_undo (session));
   enable (self, "redo", tf_session_can_redo (session));
-  enable (self, "finish-drawing", n >= 3);
+  enable (self, "finish-drawing",
+          n >= (tf_session_get_tool (session) == TF_TOOL_SPLIT ? 2 : 3));
   enable (self, "cancel-drawing", drawing || tf_session_get_region (session) != NULL);
   enable (self, "cancel-work", tf_session_get_progress (session, NULL) != NULL);
   enable (self, "retry", tf_session_get_problem (session) != NULL);
@@ -314,4 +316,5 @@ tf_window_update_actions (TfWindow *self)
   tf_window_update_plate_actions (self);
   tf_window_update_frame_actions (self);
   tf_window_update_list_actions (self);
+  tf_window_update_tool_actions (self);
 }

@@ -44,6 +44,21 @@ static const Key keys[] = {
   { "class",
     { N_ ("Choose a mark first: a class belongs to a region."),
       N_ ("Keep the hint first: a class belongs to a region."), NULL } },
+  { "brush-in", { N_ ("Choose a hint or mark first: . and M, or click."), NULL, NULL } },
+  { "brush-out", { N_ ("Choose a hint or mark first: . and M, or click."), NULL, NULL } },
+  { "split", { N_ ("Choose a hint or mark first: . and M, or click."), NULL, NULL } },
+  { "leave-out", { N_ ("Choose a hint or mark first: . and M, or click."), NULL, NULL } },
+  { "corners", { N_ ("Choose a hint or mark first: . and M, or click."), NULL, NULL } },
+  { "pin", { N_ ("Choose a hint or mark first: . and M, or click."), NULL, NULL } },
+  { "join",
+    { N_ ("Choose a hint or mark first: . and M, or click."), N_ ("There is nothing to join it with."),
+      N_ ("There is nothing to join it with.") } },
+  { "carry",
+    { N_ ("No frame before this one has marks."), N_ ("No frame before this one has marks."),
+      N_ ("No frame before this one has marks.") } },
+  { "carry-on",
+    { N_ ("Choose a mark first: its region is carried to the next frame."),
+      N_ ("Keep the hint first: then its region can be carried."), NULL } },
 };
 
 static Chosen

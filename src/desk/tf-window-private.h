@@ -35,6 +35,13 @@ void tf_window_add_list_actions (TfWindow *window);
 void tf_window_update_list_actions (TfWindow *window);
 /** tf_window_show_list: the regions beside the plate instead of the roll */
 void tf_window_show_list (TfWindow *window, gboolean list);
+/* tf-actions-tools.c */
+void tf_window_add_tool_actions (TfWindow *window);
+void tf_window_update_tool_actions (TfWindow *window);
+/* tf-window-pin.c, tf-journal-view.c */
+void tf_window_ask_pin (TfWindow *window, double lon_deg, double lat_deg);
+/** tf_window_show_journal: @region: (nullable): of it alone */
+void tf_window_show_journal (TfWindow *window, TfRegionItem *region);
 /* tf-window-keys.c */
 /** tf_window_press: @detailed: a window action as of a key: done, or said why it cannot be */
 void tf_window_press (TfWindow *window, const char *detailed);
