@@ -48,6 +48,8 @@ tf_deed_copy (const TfDeed *deed)
     tf_measure_copy (&copy->measure, &deed->measure);
   copy->method = g_strdup (deed->method);
   copy->text = g_strdup (deed->text);
+  copy->ends[0] = deed->ends[0];
+  copy->ends[1] = deed->ends[1];
   copy->as = deed->as;
   copy->study = g_strdup (deed->study);
   copy->divide = deed->divide != NULL ? tf_moved_divide_copy (deed->divide) : NULL;
@@ -151,6 +153,10 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
       return tf_ledger_set_label (ledger, deed->region, person, deed->text, error);
     case TF_DEED_EXTERNAL:
       return tf_ledger_set_external (ledger, deed->region, person, deed->text, error);
+    case TF_DEED_LINK:
+      return tf_ledger_link (ledger, deed->ends[0], deed->ends[1], person, deed->text, error);
+    case TF_DEED_CUT:
+      return tf_ledger_cut (ledger, deed->ends[0], deed->ends[1], person, deed->text, error);
     case TF_DEED_UNDO:
       return tf_ledger_undo (ledger, person, &deed->undone, error);
     case TF_DEED_REDO:
@@ -214,6 +220,8 @@ tf_deed_name (const TfDeed *deed)
     N_ ("the class"),
     N_ ("the label"),
     N_ ("the external number"),
+    N_ ("the link"),
+    N_ ("the cut"),
     N_ ("undoing"),
     N_ ("redoing"),
     N_ ("the draft"),
@@ -243,6 +251,8 @@ tf_deed_word (const char *what)
     { "geometry", N_ ("geometry corrected") },
     { "divide", N_ ("divide moved") },
     { "shift", N_ ("shift handed over") },
+    { "link", N_ ("linked by hand") },
+    { "cut", N_ ("cut by hand") },
     { "undo", N_ ("undone") },
     { "redo", N_ ("done again") },
     { "person", N_ ("first deed of this person") },

@@ -8,7 +8,7 @@
  * window. */
 
 #include "tf-ledger-divides.h"
-#include "tf-ledger.h"
+#include "tf-ledger-follow.h"
 
 G_BEGIN_DECLS
 
@@ -21,6 +21,8 @@ typedef enum
   TF_DEED_CLASS,    /* region, frame, text */
   TF_DEED_LABEL,    /* region, text */
   TF_DEED_EXTERNAL, /* region, text: its number in an official list */
+  TF_DEED_LINK,     /* ends, text: the reason: both are one region */
+  TF_DEED_CUT,      /* likewise: they are not */
   TF_DEED_UNDO,
   TF_DEED_REDO,
   TF_DEED_DRAFT, /* frame, text; NULL text takes the draft away */
@@ -43,6 +45,7 @@ typedef struct
   TfMeasure measure;
   char *method;
   char *text;
+  TfSight ends[2];
   GPtrArray *parts; /* of TfDeed, the same person's */
   const char *as;   /* static: "split", "join", "several" */
   char *study;

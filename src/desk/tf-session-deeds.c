@@ -439,6 +439,21 @@ tf_session_set_external_of (TfSession *self, TfRegionItem *region, const char *t
   return set_fact_of (self, TF_DEED_EXTERNAL, region, text);
 }
 
+/* -- passages -------------------------------------------------------------------------------- */
+
+gboolean
+tf_session_tie (TfSession *self, TfSight a, TfSight b, gboolean cut, const char *reason)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && a.mark != 0 && b.mark != 0, FALSE);
+  if (!tf_session_is_writable (self) || !has_person (self))
+    return FALSE;
+  TfDeed *deed = tf_deed_new (cut ? TF_DEED_CUT : TF_DEED_LINK, self->person);
+  deed->ends[0] = a;
+  deed->ends[1] = b;
+  deed->text = g_strdup (reason != NULL ? reason : "");
+  return push (self, deed);
+}
+
 /* -- undo and redo --------------------------------------------------------------------------- */
 
 static gboolean

@@ -71,30 +71,35 @@ tf_session_open_mark (TfSession *self, gint64 mark, gboolean hint)
 }
 
 void
+tf_session_choose_sighting (TfSession *self, gint64 frame, TfSight sight)
+{
+  g_return_if_fail (TF_IS_SESSION (self));
+  TfFrameItem *item = tf_session_find_frame (self, frame);
+  if (item == NULL)
+    return;
+  tf_session_choose_frame (self, item);
+  guint n = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) region = g_list_model_get_item (G_LIST_MODEL (self->regions), k);
+      if (tf_region_item_is (region, sight.mark, sight.is_hint))
+        {
+          tf_session_choose_region (self, region);
+          return;
+        }
+    }
+  self->want_mark = sight.mark;
+  self->want_hint = sight.is_hint;
+}
+
+void
 tf_session_choose_dot (TfSession *self, gint64 id)
 {
   g_return_if_fail (TF_IS_SESSION (self));
   if (id < 1 || id > self->points->len)
     return;
   const TfPoint *point = &g_array_index (self->points, TfPoint, (guint)id - 1);
-  TfFrameItem *item = tf_session_find_frame (self, point->frame);
-  if (item == NULL)
-    return;
-  gint64 mark = point->mark;
-  gboolean hint = point->hint;
-  tf_session_choose_frame (self, item);
-  guint n = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
-  for (guint k = 0; k < n; k++)
-    {
-      g_autoptr (TfRegionItem) region = g_list_model_get_item (G_LIST_MODEL (self->regions), k);
-      if (tf_region_item_is (region, mark, hint))
-        {
-          tf_session_choose_region (self, region);
-          return;
-        }
-    }
-  self->want_mark = mark;
-  self->want_hint = hint;
+  tf_session_choose_sighting (self, point->frame, (TfSight){ point->mark, point->hint });
 }
 
 gint64

@@ -171,6 +171,12 @@ tf_session_set_params (TfSession *self, const TfMeasureParams *params)
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
+TfJudge *
+tf_session_get_judge (TfSession *self)
+{
+  return self->judge;
+}
+
 const TfDivides *
 tf_session_get_divides (TfSession *self)
 {

@@ -25,6 +25,7 @@
 #include "tf-deed.h"
 #include "tf-frame-item.h"
 #include "tf-judge.h"
+#include "tf-ledger-follow.h"
 #include "tf-picture.h"
 #include "tf-region-item.h"
 #include "tf-shift.h"
@@ -306,6 +307,7 @@ const char *tf_session_get_method (TfSession *session);
  * measured anew; the method's text goes with every mark. */
 const TfMeasureParams *tf_session_get_params (TfSession *session);
 void tf_session_set_params (TfSession *session, const TfMeasureParams *params);
+TfJudge *tf_session_get_judge (TfSession *session);
 const TfDivides *tf_session_get_divides (TfSession *session);
 
 /* -- deeds (tf-session-deeds.c); FALSE: not possible now (the actions ask the tf_session_can_
@@ -324,6 +326,8 @@ gboolean tf_session_set_class (TfSession *session, const char *text);
 /** tf_session_set_label_of, tf_session_set_external_of: facts about the region of a mark */
 gboolean tf_session_set_label_of (TfSession *session, TfRegionItem *region, const char *text);
 gboolean tf_session_set_external_of (TfSession *session, TfRegionItem *region, const char *text);
+/** tf_session_tie: two sightings, on whatever frames, are one region or (@cut) are not. */
+gboolean tf_session_tie (TfSession *session, TfSight a, TfSight b, gboolean cut, const char *reason);
 gboolean tf_session_can_undo (TfSession *session);
 gboolean tf_session_undo (TfSession *session);
 gboolean tf_session_can_redo (TfSession *session);
@@ -376,6 +380,8 @@ GArray *tf_session_get_dots (TfSession *session, guint *n_hidden);
 guint tf_session_get_n_marks (TfSession *session);
 gboolean tf_session_get_show_hints (TfSession *session);
 void tf_session_set_show_hints (TfSession *session, gboolean show);
+/** tf_session_choose_sighting: that frame, with that mark or hint on it chosen (mark 0: none). */
+void tf_session_choose_sighting (TfSession *session, gint64 frame, TfSight sight);
 void tf_session_choose_dot (TfSession *session, gint64 id);
 /** tf_session_get_chosen_dot: 0: none */
 gint64 tf_session_get_chosen_dot (TfSession *session);

@@ -10,6 +10,8 @@
 #include "tf-actions-laws.h"
 #include "tf-laws-bench.h"
 #include "tf-list.h"
+#include "tf-actions-follow.h"
+#include "tf-follow-bench.h"
 #include "tf-plate-pane.h"
 #include "tf-preferences.h"
 #include "tf-roll.h"
@@ -37,6 +39,8 @@ struct _TfWindow
   TfSlip *slip;
   TfWingsView *wings;
   TfLawsBench *laws;
+  TfFollowBench *follow;
+  TfFollowed *followed;
   TfSession *session;
   AdwToast *toast; /* the last one */
   guint age_timer;
@@ -419,6 +423,9 @@ dispose (GObject *object)
       g_signal_handlers_disconnect_by_data (self->session, self);
       tf_session_close (self->session);
     }
+  if (self->followed != NULL)
+    tf_followed_close (self->followed);
+  g_clear_object (&self->followed);
   g_clear_object (&self->session);
   g_clear_object (&self->toast);
   G_OBJECT_CLASS (tf_window_parent_class)->dispose (object);
@@ -453,6 +460,7 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfWindow, plate_pane);
   gtk_widget_class_bind_template_child (widget, TfWindow, slip);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings);
+  gtk_widget_class_bind_template_child (widget, TfWindow, follow);
 }
 
 static void
@@ -467,6 +475,7 @@ tf_window_class_init (TfWindowClass *klass)
   g_type_ensure (TF_TYPE_SLIP);
   g_type_ensure (TF_TYPE_WINGS_VIEW);
   g_type_ensure (TF_TYPE_LAWS_BENCH);
+  g_type_ensure (TF_TYPE_FOLLOW_BENCH);
   gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/window.ui");
   bind_children (widget);
 }
@@ -517,6 +526,9 @@ tf_window_init (TfWindow *self)
                            G_CONNECT_SWAPPED | G_CONNECT_AFTER);
   tf_wings_view_set_session (self->wings, self->session);
   tf_laws_bench_set_session (self->laws, self->session);
+  self->followed = tf_followed_new (self->session);
+  tf_window_add_follow_actions (self, self->followed);
+  tf_follow_bench_set_followed (self->follow, self->followed);
   self->age_timer = g_timeout_add_seconds (AGE_SECONDS, age_tick, self);
   GtkSettings *settings = gtk_widget_get_settings (GTK_WIDGET (self));
   g_signal_connect_object (settings, "notify::gtk-xft-dpi", G_CALLBACK (set_widths), self,

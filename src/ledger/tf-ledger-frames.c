@@ -176,13 +176,10 @@ tf_frame_row_free (TfFrameRow *row)
   g_free (row);
 }
 
-GPtrArray *
-tf_ledger_frames (TfLedger *ledger, GError **error)
+static GPtrArray *
+read_all (TfLedger *ledger, sqlite3_stmt *query, GError **error)
 {
-  g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_frame_row_free);
-  g_autoptr (sqlite3_stmt) query
-      = tf_query (ledger, error, ROW_SQL "ORDER BY f.time IS NULL, f.time, f.id", "");
   int more = -1;
   while (query != NULL && (more = tf_query_step (ledger, query, error)) > 0)
     {
@@ -192,6 +189,25 @@ tf_ledger_frames (TfLedger *ledger, GError **error)
       g_ptr_array_add (rows, row);
     }
   return more == 0 ? g_steal_pointer (&rows) : NULL;
+}
+
+GPtrArray *
+tf_ledger_frames (TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, NULL);
+  g_autoptr (sqlite3_stmt) query
+      = tf_query (ledger, error, ROW_SQL "ORDER BY f.time IS NULL, f.time, f.id", "");
+  return read_all (ledger, query, error);
+}
+
+GPtrArray *
+tf_ledger_frames_between (TfLedger *ledger, TfTime from, TfTime to, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, NULL);
+  g_autoptr (sqlite3_stmt) query
+      = tf_query (ledger, error, ROW_SQL "WHERE f.time BETWEEN ?1 AND ?2 ORDER BY f.time, f.id",
+                  "dd", from.s, to.s);
+  return read_all (ledger, query, error);
 }
 
 TfFrameRow *

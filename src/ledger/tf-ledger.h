@@ -112,6 +112,8 @@ gint64 tf_ledger_find_frame (TfLedger *ledger, const char *checksum, int hdu, in
 gint64 tf_ledger_find_file (TfLedger *ledger, const char *path);
 /** tf_ledger_frames: (element-type TfFrameRow) in time order, unknown times last. */
 GPtrArray *tf_ledger_frames (TfLedger *ledger, GError **error);
+/** tf_ledger_frames_between: the same, those of known time in a stretch, ends included. */
+GPtrArray *tf_ledger_frames_between (TfLedger *ledger, TfTime from, TfTime to, GError **error);
 TfFrameRow *tf_ledger_frame (TfLedger *ledger, gint64 id, GError **error);
 /** tf_frame_row_get_correction: what that person (NULL: nobody) corrected on the frame; none when nothing. */
 TfCorrection tf_frame_row_get_correction (const TfFrameRow *row, const char *person);

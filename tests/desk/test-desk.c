@@ -119,6 +119,7 @@ main (int argc, char **argv)
   test_desk_add_session ();
   test_desk_add_plate ();
   test_desk_add_roll ();
+  test_desk_add_follow ();
   test_desk_add_geometry ();
   test_desk_add_list ();
   test_desk_add_window ();

@@ -18,6 +18,7 @@ TfSession *test_desk_session (const char *ledger_path);
 gboolean test_desk_has_display (void);
 
 void test_desk_add_words (void);
+void test_desk_add_follow (void);
 void test_desk_add_geometry (void);
 void test_desk_add_list (void);
 void test_desk_add_plate (void);
