@@ -75,8 +75,6 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "hints-counted", TF_NOTE_CAUTION,
     N_ ("{0} of the rows are hints that nobody has judged; {1} are people's marks. A hint that "
         "follow has not linked counts as a region of its own.") },
-    N_ ("{0} of the rows are hints that nobody has judged; {1} are people's marks. A hint is "
-        "counted as a region of its own.") },
   { "instruments-scaled", TF_NOTE_CAUTION,
     N_ ("Fluxes were multiplied by scales of instruments that people kept: {0}. Floors were not.") },
   { "instruments-unscaled-pooled", TF_NOTE_CAUTION,
