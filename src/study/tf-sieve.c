@@ -39,6 +39,18 @@ condition_new (const TfColumn *column, TfIs is, guint n)
 }
 
 TfCondition *
+tf_condition_copy (const TfCondition *condition)
+{
+  TfCondition *copy = condition_new (condition->column, condition->is, condition->n);
+  for (guint k = 0; k < condition->n; k++)
+    {
+      copy->numbers[k] = condition->numbers[k];
+      copy->texts[k] = g_strdup (condition->texts[k]);
+    }
+  return copy;
+}
+
+TfCondition *
 tf_condition_new (const char *column, TfIs is, double number, const char *text)
 {
   const TfColumn *found = tf_column_find (column);

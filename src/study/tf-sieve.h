@@ -42,6 +42,7 @@ typedef struct
   char **texts;    /* NULL for a number */
 } TfCondition;
 void tf_condition_free (TfCondition *condition);
+TfCondition *tf_condition_copy (const TfCondition *condition);
 
 /** tf_condition_new: with one number or text (the other NaN or NULL); NULL for a column that is not
  * there. */

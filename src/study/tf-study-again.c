@@ -6,6 +6,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-sieve.h"
 #include "tf-study-private.h"
 
 struct _TfStudyTaken
@@ -22,11 +23,25 @@ tf_stretch_is_all (const TfStretch *s)
   return isnan (s->from_year) && isnan (s->to_year) && isnan (s->low_deg) && isnan (s->high_deg);
 }
 
+static gpointer
+copy_condition (gconstpointer condition, gpointer data)
+{
+  return tf_condition_copy (condition);
+}
+
+static GPtrArray *
+copy_conditions (GPtrArray *conditions)
+{
+  return g_ptr_array_copy (conditions, copy_condition, NULL);
+}
+
 TfStudy *
 tf_study_copy (const TfStudy *study)
 {
   TfStudy *copy = g_memdup2 (study, sizeof *study);
   copy->name = g_strdup (study->name);
+  copy->mark_conditions = copy_conditions (study->mark_conditions);
+  copy->region_conditions = copy_conditions (study->region_conditions);
   copy->divides = study->divides != NULL ? tf_divides_ref (study->divides) : NULL;
   copy->divides_shown = g_strdup (study->divides_shown);
   return copy;

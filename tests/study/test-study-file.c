@@ -9,6 +9,7 @@
 
 #include "tf-check.h"
 #include "tf-sieve.h"
+#include "tf-study-again.h"
 #include "tf-study-compare.h"
 #include "test-study.h"
 
@@ -59,6 +60,11 @@ test_round_trip (void)
   g_assert_cmpuint (again->mark_conditions->len, ==, 2);
   g_assert_cmpuint (again->region_conditions->len, ==, 2);
   tf_check_near ("divide", tf_divides_latitude (again->divides, 24, -1, times[1]), 12.25, 1e-9);
+  g_autoptr (TfStudy) copy = tf_study_copy (study); /* shares nothing: both are freed */
+  g_autofree char *copied = tf_study_dup_text (copy);
+  g_assert_cmpstr (copied, ==, text);
+  g_ptr_array_set_size (copy->mark_conditions, 0);
+  g_assert_cmpuint (study->mark_conditions->len, ==, 2);
 }
 
 static const struct
