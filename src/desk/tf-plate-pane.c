@@ -172,7 +172,7 @@ words_of (TfTool tool)
     case TF_TOOL_PIN:
       return _ ("Click where the pole is, or go there with the arrow keys and press Space.");
     case TF_TOOL_JOIN:
-      return _ ("Choose the one to join with: click it, or . for hints, V for marks.");
+      return _ ("Choose the one to join with: click it, or . for hints, U for marks.");
     case TF_TOOL_NONE:
     default:
       return NULL;

@@ -112,7 +112,10 @@ append_half (GString *text, const TfMeasure *m)
   g_autofree char *tilt = tf_words_dup_signed (m->axis_tilt_deg, 1),
                   *noise = tf_words_dup_number (m->tilt_terms.total, 1),
                   *flux = tf_chart_dup_flux (m->flux_unsigned_mx);
-  g_string_append_printf (text, _ ("Other half: tilt %s° ± %s°, flux %s\n"), tilt, noise, flux);
+  if (m->leading_polarity == 0)
+    g_string_append_printf (text, _ ("Other half: one polarity, no tilt, flux %s\n"), flux);
+  else
+    g_string_append_printf (text, _ ("Other half: tilt %s° ± %s°, flux %s\n"), tilt, noise, flux);
 }
 
 static void

@@ -38,9 +38,16 @@ def to_hints(window, n):
 
 
 def judge(window, chance):
-    """One or two deeds, each shown as saved. Returns how many."""
+    """One or two deeds, each shown as saved; two hints kept as one deed are two acts, both there or neither. Returns
+    how many acts."""
     marks, hints = window.counts()
     choose_hint(window)
+    if chance.random() < 0.3:
+        window.action("extend-next")
+        window.wait("two to be chosen", lambda: "2 chosen" in window.plate())
+        window.action("keep")
+        wait_counts(window, marks + 2, hints - 2)
+        return 2
     kept = chance.random() < 0.7
     window.action("keep" if kept else "drop-hint")
     wait_counts(window, marks + kept, hints - 1)
@@ -63,7 +70,7 @@ def _(given):
             for turn in range(ROUNDS):
                 if turn > 0:
                     w.start()
-                to_hints(w, 4)
+                to_hints(w, 5)
                 shown = w.value(ledger, DEEDS)
                 for _ in range(chance.randrange(0, 3)):
                     shown += judge(w, chance)
