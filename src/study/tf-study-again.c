@@ -6,6 +6,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-ledger-scales.h"
 #include "tf-sieve.h"
 #include "tf-study-private.h"
 
@@ -13,8 +14,9 @@ struct _TfStudyTaken
 {
   GPtrArray *rows; /* TfRow */
   TfSample *all;
+  GPtrArray *scales; /* TfKeptScale */
   double floor;
-  gboolean with_hints;
+  gboolean with_hints, with_scales;
 };
 
 gboolean
@@ -54,14 +56,19 @@ tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
   double floor = tf_study_even_floor (ledger, NULL);
-  GPtrArray *rows = tf_study_read_rows (study, ledger, floor, error);
+  g_autoptr (GPtrArray) scales = tf_ledger_scales (ledger, error);
+  GPtrArray *rows = scales != NULL ? tf_study_read_rows (study, ledger, floor, error) : NULL;
   if (rows == NULL)
     return NULL;
   TfStudyTaken *taken = g_atomic_rc_box_new0 (TfStudyTaken);
   taken->rows = rows;
+  taken->scales = g_steal_pointer (&scales);
   taken->all = tf_study_sample_rows (rows);
   taken->floor = floor;
   taken->with_hints = study->sieve.with_hints;
+  taken->with_scales = study->sieve.with_scales;
+  if (taken->with_scales)
+    tf_study_scale (taken->all, rows, taken->scales, TRUE);
   return taken;
 }
 
@@ -76,6 +83,7 @@ taken_clear (gpointer data)
 {
   TfStudyTaken *taken = data;
   g_ptr_array_unref (taken->rows);
+  g_ptr_array_unref (taken->scales);
   tf_sample_free (taken->all);
 }
 
@@ -89,7 +97,8 @@ tf_study_taken_unref (TfStudyTaken *taken)
 gboolean
 tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study)
 {
-  return !taken->with_hints == !study->sieve.with_hints;
+  return !taken->with_hints == !study->sieve.with_hints
+         && !taken->with_scales == !study->sieve.with_scales;
 }
 
 guint
@@ -136,7 +145,7 @@ tf_study_again (const TfStudyTaken *taken, const TfStudy *study, const TfStretch
   if (depth < TF_FINDINGS_COMPLETE)
     own->hale.draws = own->joy.draws = 0;
   g_autoptr (TfSample) part = all ? NULL : narrow (taken->all, stretch);
-  const TfStudyRows rows = { taken->rows, all ? taken->all : part };
+  const TfStudyRows rows = { taken->rows, all ? taken->all : part, taken->scales };
   /* other measures and the hints are read for the whole ledger, not for a stretch */
   TfFindings *findings = tf_study_run_rows (own, &rows, all ? ledger : NULL, taken->floor,
                                             depth == TF_FINDINGS_WHAT_IF);
