@@ -46,6 +46,8 @@ int tf_verb_fill (int argc, char **argv);
 int tf_verb_gather (int argc, char **argv);
 int tf_verb_follow (int argc, char **argv);
 int tf_verb_bring (int argc, char **argv);
+/** tf_batch_bring_summary: a daily region summary; -1 when @file is none, else the exit code. @look: nothing is written. */
+int tf_batch_bring_summary (const char *path, const char *file, const char *source, gboolean look, gboolean json);
 int tf_verb_laws (int argc, char **argv);
 int tf_verb_export (int argc, char **argv);
 int tf_verb_check (int argc, char **argv);

@@ -135,6 +135,9 @@ fail (const GError *error)
 static int
 bring (const char *path, const char *table, const Words *words)
 {
+  int code = tf_batch_bring_summary (path, table, words->source, words->look, words->json);
+  if (code >= 0)
+    return code;
   g_autoptr (GError) error = NULL;
   gboolean exists = g_file_test (path, G_FILE_TEST_EXISTS);
   g_autoptr (TfLedger) ledger = exists ? tf_ledger_open (path, &error) : NULL;

@@ -534,6 +534,22 @@ def _():
     call("check", ledger)
 
 
+@test("a daily region summary is brought; a line that cannot be read is named and the rest taken; --look writes nothing")
+def _():
+    ledger, summary = os.path.join(work, "listed.ledger"), os.path.join(work, "summary.txt")
+    lines = [":Product: made by hand", "Solar Region Summary", "SRS Number 60 Issued at 0030Z on 01 Mar 2013",
+             "I.  Regions with Sunspots.  Locations Valid at 28/2400Z ", "Nmbr Location  Lo  Area  Z   LL   NN Mag Type",
+             "1682 S19W42   153  0030 Cao  05   03 Beta", "1684 N13X05   106  0260 Ekc  12   21 Beta"]
+    with open(summary, "w", encoding="ascii") as file:
+        file.write("\n".join(lines) + "\n")
+    looked = document("bring", "--look", "--json", ledger, summary, code=1)
+    assert looked["time"] == "2013-03-01T00:00:00Z" and looked["taken"] == 1, looked
+    assert [row["place"] for row in looked["bad_rows"]] == [7], looked
+    assert not os.path.exists(ledger)
+    call("bring", ledger, summary, code=1)
+    call("check", ledger)
+
+
 shutil.rmtree(work, ignore_errors=True)
 print(f"1..{number}")
 sys.exit(1 if failed else 0)
