@@ -445,6 +445,8 @@ key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifi
       || tf_session_get_frame (self->session) == NULL)
     return FALSE;
   TfTool tool = tool_of (self);
+  if (key == GDK_KEY_Escape) /* here, before a message in sight takes it for itself */
+    return gtk_widget_activate_action (GTK_WIDGET (self), "win.cancel-drawing", NULL);
   if (brush_of (key) != TF_TOOL_NONE)
     hold_brush (self, key);
   else if (tool != TF_TOOL_NONE && tool != TF_TOOL_OUTLINE && key == GDK_KEY_space
