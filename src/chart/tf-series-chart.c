@@ -41,7 +41,7 @@ typedef struct
 } Shown;
 
 static Shown
-shown_in (const TfSeriesChart *chart, const TfSeriesPoint *p, Panel panel)
+shown_in (const TfSeriesChart *chart, const TfSeriesMoment *p, Panel panel)
 {
   switch (panel)
     {
@@ -258,7 +258,7 @@ draw_joins (cairo_t *cr, const TfSeriesChart *chart, const TfPlot *plot, const T
   cairo_set_line_width (cr, style->text_pt * 0.08);
   for (guint k = 1; k < chart->n; k++)
     {
-      const TfSeriesPoint *a = &chart->points[k - 1], *b = &chart->points[k];
+      const TfSeriesMoment *a = &chart->points[k - 1], *b = &chart->points[k];
       double ya = shown_in (chart, a, panel).value[value],
              yb = shown_in (chart, b, panel).value[value];
       if (!isfinite (ya) || !isfinite (yb)
@@ -295,7 +295,7 @@ draw_points (cairo_t *cr, const TfSeriesChart *chart, const TfPlot *plot, const 
 {
   for (guint k = 0; k < chart->n; k++)
     {
-      const TfSeriesPoint *p = &chart->points[k];
+      const TfSeriesMoment *p = &chart->points[k];
       Shown s = shown_in (chart, p, panel);
       double x = tf_plot_x (plot, p->time.s);
       cairo_push_group (cr);
@@ -448,7 +448,7 @@ compare_steps (gconstpointer a, gconstpointer b)
 }
 
 double
-tf_series_chart_cadence (const TfSeriesPoint *points, guint n)
+tf_series_chart_cadence (const TfSeriesMoment *points, guint n)
 {
   g_autoptr (GArray) steps = g_array_new (FALSE, FALSE, sizeof (double));
   for (guint k = 1; k < n; k++)
@@ -477,7 +477,7 @@ add_number (GString *text, const char *name, double value, double sigma, const c
 }
 
 char *
-tf_series_chart_dup_point (const TfSeriesPoint *p)
+tf_series_chart_dup_point (const TfSeriesMoment *p)
 {
   g_autofree char *day = tf_series_chart_dup_day (p->time);
   GString *text = g_string_new (day);

@@ -26,11 +26,11 @@ typedef struct
   double line_mm; /* strong-gradient inversion line; NaN: not measured */
   double mu;      /* NaN on maps */
   gboolean hint;  /* nobody has judged it */
-} TfSeriesPoint;
+} TfSeriesMoment;
 
 typedef struct
 {
-  const TfSeriesPoint *points; /* in order of time, borrowed */
+  const TfSeriesMoment *points; /* in order of time, borrowed */
   guint n;
   double joy_deg, joy_scatter_deg; /* expected axis tilt; NaN: no band */
   const char *joy_name;            /* of the relation; borrowed */
@@ -44,7 +44,7 @@ typedef struct
 } TfSeriesChart;
 
 /** tf_series_chart_cadence: median step between neighbours, s; NaN for fewer than two. */
-double tf_series_chart_cadence (const TfSeriesPoint *points, guint n);
+double tf_series_chart_cadence (const TfSeriesMoment *points, guint n);
 void tf_series_chart_draw (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
                            TfArea area);
 /** tf_series_chart_nearest: index of the point nearest in time to @x, -1 without points. */
@@ -53,7 +53,7 @@ int tf_series_chart_nearest (const TfSeriesChart *chart, const TfChartStyle *sty
 TfTime tf_series_chart_time_at (const TfSeriesChart *chart, const TfChartStyle *style, TfArea area,
                                 double x);
 /** tf_series_chart_dup_point: one point in words, with units. */
-char *tf_series_chart_dup_point (const TfSeriesPoint *point);
+char *tf_series_chart_dup_point (const TfSeriesMoment *point);
 /** tf_series_chart_dup_description: what the chart shows now, for a screen reader. */
 char *tf_series_chart_dup_description (const TfSeriesChart *chart);
 /** tf_series_chart_dup_day: "12 Oct 06:00" in UTC. */

@@ -313,15 +313,45 @@ busy_changed (TfFollowBench *self)
   gtk_widget_set_visible (self->busy, tf_followed_is_busy (self->followed));
 }
 
+/* The chosen passage's words are cut where the panel is narrow; the list shows them whole. */
+static void
+words_setup (GtkSignalListItemFactory *factory, GtkListItem *cell)
+{
+  GtkWidget *label = gtk_label_new (NULL);
+  gtk_label_set_xalign (GTK_LABEL (label), 0);
+  gtk_label_set_ellipsize (GTK_LABEL (label), PANGO_ELLIPSIZE_END);
+  gtk_label_set_width_chars (GTK_LABEL (label), 22);
+  gtk_list_item_set_child (cell, label);
+}
+
+static void
+words_bind (GtkSignalListItemFactory *factory, GtkListItem *cell)
+{
+  const char *words = tf_passage_item_get_words (gtk_list_item_get_item (cell));
+  gtk_label_set_label (GTK_LABEL (gtk_list_item_get_child (cell)), words);
+  gtk_widget_set_tooltip_text (gtk_list_item_get_child (cell), words);
+}
+
+static void
+fill_passages (TfFollowBench *self)
+{
+  g_autoptr (GtkListItemFactory) factory = gtk_signal_list_item_factory_new ();
+  g_signal_connect (factory, "setup", G_CALLBACK (words_setup), NULL);
+  g_signal_connect (factory, "bind", G_CALLBACK (words_bind), NULL);
+  g_autoptr (GtkExpression) words
+      = gtk_property_expression_new (TF_TYPE_PASSAGE_ITEM, NULL, "words");
+  gtk_drop_down_set_expression (self->passage, words);
+  gtk_drop_down_set_factory (self->passage, factory);
+  gtk_drop_down_set_model (self->passage, tf_followed_get_passages (self->followed));
+}
+
 void
 tf_follow_bench_set_followed (TfFollowBench *self, TfFollowed *followed)
 {
   g_return_if_fail (TF_IS_FOLLOW_BENCH (self) && self->followed == NULL);
   self->followed = g_object_ref (followed);
   self->filling = TRUE;
-  gtk_drop_down_set_expression (self->passage,
-                                gtk_property_expression_new (TF_TYPE_PASSAGE_ITEM, NULL, "words"));
-  gtk_drop_down_set_model (self->passage, tf_followed_get_passages (followed));
+  fill_passages (self);
   self->moment = fill_strip (self->strip, tf_followed_get_looks (followed));
   self->beside_moment = fill_strip (self->beside, tf_followed_get_beside_looks (followed));
   self->filling = FALSE;

@@ -64,7 +64,7 @@ dup_end (TfTime time, TfEnd end, gboolean born)
 static char *
 dup_missing (const TfPassageContent *content)
 {
-  const TfSeriesPoint *p = (const TfSeriesPoint *)(gconstpointer)content->points->data;
+  const TfSeriesMoment *p = (const TfSeriesMoment *)(gconstpointer)content->points->data;
   double usual = tf_series_chart_cadence (p, content->points->len), longest = 0;
   guint at = 0, gaps = 0;
   for (guint k = 1; k < content->points->len; k++)
@@ -124,12 +124,57 @@ add_taken (GPtrArray *facts, TfFollowed *followed, const TfPassageContent *conte
       add (facts, _ ("tilt then"), dup_tilt (m), NULL);
       add (facts, _ ("flux then"), tf_chart_dup_flux (m->flux_unsigned_mx), _ ("Unsigned."));
     }
-  if (n > 0)
+  TfTime from, to;
+  tf_followed_get_brush (followed, &from, &to);
+  if (n > 0 && tf_time_is_known (from))
     {
       g_autofree char *value = tf_words_dup_signed (mean, 1);
-      add (facts, _ ("mean, |CMD| ≤ 45°"), g_strdup_printf (ngettext ("%s° of %u mark", "%s° of %u marks", n), value, n),
+      add (facts, _ ("mean of the stretch"), g_strdup_printf (ngettext ("%s° of %u mark", "%s° of %u marks", n), value, n),
            _ ("Axial mean (doubled angles) of the axis tilt over |CMD| ≤ 45°, each mark once."));
     }
+}
+
+/* What is derived from the whole passage, each with the window it was taken from. */
+static char *
+dup_window (const TfFigure *figure, const char *method)
+{
+  g_autofree char *from = tf_series_chart_dup_day (figure->from),
+                  *to = tf_series_chart_dup_day (figure->to);
+  return g_strdup_printf (ngettext ("%s %u mark, %s – %s.", "%s %u marks, %s – %s.", figure->n), method,
+                          figure->n, from, to);
+}
+
+static void
+add_rate (GPtrArray *facts, const char *name, const TfFigure *rate)
+{
+  if (!isfinite (rate->value))
+    return;
+  g_autofree char *value = tf_chart_dup_flux (fabs (rate->value) * 24),
+                  *sigma = tf_chart_dup_flux (rate->sigma * 24);
+  g_autofree char *how = dup_window (
+      rate, _ ("Least squares on the unsigned flux between a tenth and nine tenths of the greatest."));
+  add (facts, name, g_strdup_printf (_ ("%s ± %s a day"), value, sigma), how);
+}
+
+static void
+add_derived (GPtrArray *facts, const TfPassageContent *content)
+{
+  if (content->series == NULL)
+    return;
+  const TfDerived *d = &content->series->derived;
+  add_rate (facts, _ ("emerging at"), &d->emergence);
+  add_rate (facts, _ ("decaying at"), &d->decay);
+  if (!isfinite (d->tilt_mean.value))
+    return;
+  g_autofree char *value = tf_words_dup_signed (d->tilt_mean.value, 1),
+                  *sigma = tf_words_dup_number (d->tilt_mean.sigma, 1),
+                  *n = tf_words_dup_number (d->n_effective, 1);
+  g_autofree char *method = g_strdup_printf (
+      _ ("Axial mean over |CMD| ≤ 45°; its error allows for marks that are not independent: they count "
+         "as %s."),
+      n);
+  g_autofree char *how = dup_window (&d->tilt_mean, method);
+  add (facts, _ ("mean tilt"), g_strdup_printf ("%s° ± %s°", value, sigma), how);
 }
 
 static void
@@ -179,6 +224,7 @@ tf_follow_facts (TfFollowed *followed)
   add (facts, _ ("last seen"), dup_end (p->last_time, p->ended, FALSE), NULL);
   add (facts, _ ("missing"), dup_missing (content), NULL);
   add_taken (facts, followed, content);
+  add_derived (facts, content);
   add_held (facts, content);
   add_floor (facts, content);
   return facts;

@@ -20,6 +20,7 @@ tf_passage_content_free (TfPassageContent *c)
   g_clear_pointer (&c->rows, g_ptr_array_unref);
   g_clear_pointer (&c->points, g_array_unref);
   g_clear_pointer (&c->looks, g_ptr_array_unref);
+  g_clear_pointer (&c->series, tf_series_free);
   g_clear_pointer (&c->links, g_array_unref);
   g_clear_pointer (&c->returns, g_array_unref);
   g_clear_pointer (&c->others, g_ptr_array_unref);
@@ -232,7 +233,7 @@ add_looks (TfPassageContent *c, const GPtrArray *frames, const Anchor *anchor)
 static void
 add_gaps (TfPassageContent *c)
 {
-  double usual = tf_series_chart_cadence ((const TfSeriesPoint *)(gconstpointer)c->points->data,
+  double usual = tf_series_chart_cadence ((const TfSeriesMoment *)(gconstpointer)c->points->data,
                                           c->points->len);
   for (guint k = 1; k < c->looks->len && usual > 0; k++)
     {
@@ -260,7 +261,7 @@ add_points (TfPassageContent *c)
     {
       const TfRow *row = g_ptr_array_index (c->rows, k);
       const TfMeasure *m = &row->measure;
-      TfSeriesPoint p = {
+      TfSeriesMoment p = {
         .time = m->time,
         .tilt_deg = m->axis_tilt_deg,
         .tilt_sigma_deg = m->tilt_terms.total,
@@ -276,6 +277,17 @@ add_points (TfPassageContent *c)
       };
       g_array_append_val (c->points, p);
     }
+}
+
+/* Read beside the rows, which it takes. */
+static void
+add_derived (TfPassageContent *c, TfLedger *ledger)
+{
+  TfSeriesParams params;
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  tf_series_params_init (&params);
+  if (isfinite (c->floor_gauss) && tf_study_read_divides (study, ledger, NULL))
+    c->series = tf_series_read (ledger, c->passage->id, c->floor_gauss, study, &params, NULL);
 }
 
 static gboolean
@@ -331,7 +343,7 @@ tf_passage_content_read (TfLedger *ledger, gint64 passage, double floor_gauss, c
 {
   g_autoptr (TfPassageContent) c = g_new0 (TfPassageContent, 1);
   c->floor_gauss = floor_gauss;
-  c->points = g_array_new (FALSE, FALSE, sizeof (TfSeriesPoint));
+  c->points = g_array_new (FALSE, FALSE, sizeof (TfSeriesMoment));
   c->others = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_passage_row_free);
   c->looks = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_look_spec_free);
   c->others = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_passage_row_free);
@@ -347,6 +359,7 @@ tf_passage_content_read (TfLedger *ledger, gint64 passage, double floor_gauss, c
   if (frames == NULL)
     return NULL;
   add_points (c);
+  add_derived (c, ledger);
   c->verdicts = g_new0 (TfVerdict, MAX (c->rows->len, 1));
   for (guint k = 0; k < c->rows->len; k++)
     {

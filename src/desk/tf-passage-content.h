@@ -10,6 +10,7 @@
 #include "tf-ledger-follow.h"
 #include "tf-look-item.h"
 #include "tf-series-chart.h"
+#include "tf-series.h"
 
 G_BEGIN_DECLS
 
@@ -23,9 +24,10 @@ typedef struct
 {
   TfPassageRow *passage;
   GPtrArray *rows;   /* TfRow, with outlines, in time order */
-  GArray *points;    /* TfSeriesPoint, one a row */
+  GArray *points;    /* TfSeriesMoment, one a row */
   GPtrArray *looks;  /* TfLookSpec: rows, frames without one between them, gaps; in time order.
                         Taken by who makes items of them */
+  TfSeries *series;  /* what is derived from the rows; NULL when that cannot be had */
   GArray *links;     /* TfPassageLink */
   GArray *returns;   /* TfReturnOffer */
   GPtrArray *others; /* TfPassageRow: the other passages of the region, and those of the offers */

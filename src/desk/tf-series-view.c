@@ -56,7 +56,7 @@ tf_followed_chart (TfFollowed *followed)
   const TfPassageContent *content = tf_followed_get_content (followed);
   if (content == NULL || content->points->len == 0)
     return chart;
-  chart.points = (const TfSeriesPoint *)(gconstpointer)content->points->data;
+  chart.points = (const TfSeriesMoment *)(gconstpointer)content->points->data;
   chart.n = content->points->len;
   chart.cadence_s = tf_series_chart_cadence (chart.points, chart.n);
   chart.taken = tf_followed_get_taken (followed);

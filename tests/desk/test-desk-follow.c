@@ -97,7 +97,7 @@ passage_is_there (void)
   g_assert_cmpuint (content->points->len, ==, content->rows->len);
   for (guint k = 1; k < content->points->len; k++)
     {
-      const TfSeriesPoint *p = &g_array_index (content->points, TfSeriesPoint, k);
+      const TfSeriesMoment *p = &g_array_index (content->points, TfSeriesMoment, k);
       tf_check_near ("step", p->time.s - (p - 1)->time.s, day, 60); /* the scenario's cadence */
       g_assert_cmpfloat (p->positive_mx, >, 0);
       g_assert_cmpfloat (p->separation_mm, >, 0);
