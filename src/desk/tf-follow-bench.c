@@ -343,6 +343,7 @@ fill_passages (TfFollowBench *self)
   gtk_drop_down_set_expression (self->passage, words);
   gtk_drop_down_set_factory (self->passage, factory);
   gtk_drop_down_set_model (self->passage, tf_followed_get_passages (self->followed));
+  tf_widget_name_inside (GTK_WIDGET (self->passage), _ ("Passage"));
 }
 
 void

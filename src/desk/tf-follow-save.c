@@ -66,7 +66,7 @@ typedef struct
 {
   TfFollowed *followed;
   GArray *looks;
-  char *title;
+  char *title, *under;
 } Figure;
 
 static double
@@ -82,8 +82,9 @@ draw_figure (cairo_t *cr, const TfChartStyle *style, TfArea area, gpointer data)
 {
   const Figure *figure = data;
   TfSeriesChart chart = tf_followed_chart (figure->followed);
-  double head = style->text_pt * 2;
+  double head = style->text_pt * 3.4;
   tf_chart_text (cr, style, area.x, area.y, 0, 0, style->ink, figure->title);
+  tf_chart_text (cr, style, area.x, area.y + style->text_pt * 1.4, 0, 0, style->faint, figure->under);
   TfArea strip = { area.x, area.y + head, area.width, area.height };
   double used = tf_strip_draw (cr, (const TfStripLook *)(gconstpointer)figure->looks->data,
                                figure->looks->len, style, strip, look_mm * points_a_mm,
@@ -101,26 +102,32 @@ dup_title (TfFollowed *followed)
                   *first = tf_time_dup_iso (content->passage->first_time, 0),
                   *last = tf_time_dup_iso (content->passage->last_time, 0);
   const TfRow *row = g_ptr_array_index (content->rows, 0);
+  return g_strdup_printf ("%s · %s – %s · %s%s", name, first, last, row->instrument,
+                          row->simulated ? _ (" · simulated") : "");
+}
+
+static char *
+dup_under (TfFollowed *followed)
+{
   int diamond;
   g_autofree char *verdict = tf_follow_dup_verdict (followed, &diamond);
-  return g_strdup_printf (_ ("%s · %s – %s · %s · ± %.0f G · looks %.1f° high, north up, west right · %s%s"),
-                          name, first, last, row->instrument, followed->range,
-                          2 * content->half_deg, verdict, row->simulated ? _ (" · simulated") : "");
+  return g_strdup_printf (_ ("field ± %.0f G · looks %.1f° high, north up, west right · %s"),
+                          followed->range, 2 * tf_followed_get_content (followed)->half_deg, verdict);
 }
 
 static char *
 save_figure (TfFollowed *followed, const char *path)
 {
   g_autoptr (GArray) looks = looks_of (tf_followed_get_looks (followed));
-  g_autofree char *title = dup_title (followed);
-  Figure figure = { followed, looks, title };
+  g_autofree char *title = dup_title (followed), *under = dup_under (followed);
+  Figure figure = { followed, looks, title, under };
   TfChartStyle style = tf_chart_style (FALSE, FALSE, text_mm * points_a_mm);
   double strip = strip_height (looks, &style, page_mm * points_a_mm) / points_a_mm;
   TfFigurePage page = { .width_mm = page_mm,
-                        .height_mm = strip + chart_mm + text_mm * 2,
+                        .height_mm = strip + chart_mm + text_mm * 4,
                         .text_mm = text_mm,
                         .title = title,
-                        .subject = title };
+                        .subject = under };
   g_autoptr (GError) error = NULL;
   if (!tf_figure_write (path, &page, draw_figure, &figure, &error))
     return g_strdup (error->message);

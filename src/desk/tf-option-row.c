@@ -6,6 +6,8 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-widget-style.h"
+
 #include "tf-number.h"
 
 struct _TfOptionRow
@@ -122,6 +124,8 @@ fill (TfOptionRow *self)
     }
   gtk_accessible_update_property (GTK_ACCESSIBLE (self->control), GTK_ACCESSIBLE_PROPERTY_LABEL,
                                   words, -1);
+  if (o->type == TF_OPTION_CHOICE)
+    tf_widget_name_inside (self->control, words);
   gtk_box_append (GTK_BOX (box), self->control);
   gtk_widget_set_parent (box, GTK_WIDGET (self));
 }

@@ -81,3 +81,18 @@ tf_surface_append (GtkSnapshot *snapshot, GtkWidget *widget, cairo_surface_t *su
   cairo_paint (cr);
   cairo_destroy (cr);
 }
+
+void
+tf_widget_name_inside (GtkWidget *widget, const char *name)
+{
+  for (GtkWidget *child = gtk_widget_get_first_child (widget); child != NULL;
+       child = gtk_widget_get_next_sibling (child))
+    {
+      if (GTK_IS_POPOVER (child))
+        continue; /* its rows have their own */
+      if (gtk_widget_get_focusable (child))
+        gtk_accessible_update_property (GTK_ACCESSIBLE (child), GTK_ACCESSIBLE_PROPERTY_LABEL, name,
+                                        -1);
+      tf_widget_name_inside (child, name);
+    }
+}

@@ -16,6 +16,8 @@ G_BEGIN_DECLS
 double tf_widget_text_size (GtkWidget *widget);
 /** tf_widget_chart_style: @share: of the widget's own text size */
 TfChartStyle tf_widget_chart_style (GtkWidget *widget, double share);
+/** tf_widget_name_inside: the same accessible name for the focusable parts inside, which have none of their own (a GtkDropDown's button). */
+void tf_widget_name_inside (GtkWidget *widget, const char *name);
 /** tf_widget_describe: sets the accessible description when it changed. (transfer full) @text */
 void tf_widget_describe (GtkWidget *widget, char *text);
 /** tf_widget_paints_textures: the renderer takes textures better than cairo nodes. */

@@ -175,7 +175,7 @@ static gboolean
 read_nodes (Reader *r)
 {
   gboolean binary2 = FALSE;
-  int more;
+  int more = -1;
   while (r->reason == NULL && (more = xmlTextReaderRead (r->xml)) == 1)
     {
       int type = xmlTextReaderNodeType (r->xml);
