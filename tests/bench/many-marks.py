@@ -117,6 +117,8 @@ def main():
         return [own.get(name, 0) for name in p_names]
 
     insert(db, "point", p_names, (point(k, r) for k, r in enumerate(regions)))
+    db.execute("DELETE FROM pack")  # the points in blocks: made anew by who opens the ledger to write
+    db.execute("INSERT INTO pack (id, data) SELECT DISTINCT (hint << 40) | (mark >> 8), NULL FROM point")
     db.commit()
     db.execute("PRAGMA wal_checkpoint(TRUNCATE)")
     db.close()
