@@ -86,7 +86,8 @@ static void
 compare_slopes (const Work *work, TfComparison *row)
 {
   guint n = (guint)MAX (work->joy->draws, 0), good = 0;
-  g_autofree double *draws[2] = { g_new (double, n + 1), g_new (double, n + 1) };
+  g_autofree double *first = g_new (double, n + 1), *second = g_new (double, n + 1);
+  double *const draws[2] = { first, second };
   for (int side = 0; side < 2; side++)
     {
       TfJoyParams params = *work->joy;
