@@ -291,12 +291,31 @@ listing (const char *number, TfTime time, double lat, double carrington, double 
   return l;
 }
 
+static void
+others_free (gpointer data)
+{
+  TfOthers *others = data;
+  g_free (others->number);
+  g_free (others->mw_class);
+  g_free (others->source);
+  g_free (others);
+}
+
+static void
+placed_free (gpointer data)
+{
+  TfShiftRow *row = data;
+  g_ptr_array_unref (row->proposed);
+  g_clear_pointer (&row->others, others_free);
+  g_free (row);
+}
+
 static TfShiftRow *
 placed (GPtrArray *rows, const char *external, double lat, double lon)
 {
   TfShiftRow *row = g_new0 (TfShiftRow, 1);
   *row = (TfShiftRow){ .seen = TF_SEEN_MARK, .external = (char *)external, .lat_deg = lat, .carrington_lon_deg = lon };
-  row->proposed = g_ptr_array_new ();
+  row->proposed = g_ptr_array_new_with_free_func (others_free);
   g_ptr_array_add (rows, row);
   return row;
 }
@@ -305,7 +324,8 @@ static void
 matches_are_proposed_by_place (void)
 {
   TfTime now = tf_time_read ("2013-06-05T06:00:00Z"), then = tf_time_read ("2013-06-06T00:00:00Z");
-  g_autoptr (GPtrArray) rows = g_ptr_array_new (), unmatched = g_ptr_array_new (),
+  g_autoptr (GPtrArray) rows = g_ptr_array_new_with_free_func (placed_free),
+                        unmatched = g_ptr_array_new_with_free_func (others_free),
                         listings = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_listing_free);
   TfShiftRow *a = placed (rows, "", 15, 100), *b = placed (rows, "", 15, 108), *c = placed (rows, "11777", -20, 200);
   double l0 = tf_earth_l0 (then, TF_L0_IMAGE);
