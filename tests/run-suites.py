@@ -16,7 +16,7 @@ SHARES = {
     "build": 150, "build sanitize": 150,
     "base": 5, "sun": 10, "frame": 40, "laws": 15, "region": 75, "passage": 10, "ledger": 45, "intake": 45, "study": 15,
     "chart": 15, "exchange": 10, "simulate": 30, "batch": 60, "desk": 30, "house": 15, "outside": 120, "fuzz": 60,
-    "window": 240, "bench": 30, "bench": 20,
+    "window": 240, "bench": 20,
 }
 SANITIZED = {"base", "sun", "frame", "laws", "region", "passage", "ledger", "intake", "study", "chart", "exchange", "simulate", "fuzz"}
 LINE = re.compile(r"^(ok|not ok)\b\s*\d*\s*-?\s*([^#]*)(#\s*(\S+)\s*(.*))?$")
@@ -61,7 +61,7 @@ def run_test(test, folder, sanitize):
     env = dict(os.environ, **test["env"])
     if sanitize:
         env.update(ASAN_OPTIONS="detect_leaks=1:abort_on_error=0", UBSAN_OPTIONS="halt_on_error=1:print_stacktrace=1",
-                   TF_SANITIZED="1")
+                   LSAN_OPTIONS=f"suppressions={os.path.abspath('tests/leaks')}:print_suppressions=0", TF_SANITIZED="1")
     command = test["cmd"] + (["-k"] if "--tap" in test["cmd"] and "-k" not in test["cmd"] else [])  # go on after a failure
     try:
         done = subprocess.run(command, cwd=test["workdir"] or folder, env=env, stdout=subprocess.PIPE, stderr=subprocess.STDOUT,

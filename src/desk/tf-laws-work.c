@@ -220,10 +220,12 @@ begun (GObject *source, GAsyncResult *result, gpointer data)
         g_clear_pointer (&work->rows, tf_study_taken_unref);
       if (quick->question->rows != NULL && quick->question->age == work->age)
         work->rows = tf_study_taken_ref (quick->question->rows);
-      /* while a divide moves each answer is shown, the newest as it comes */
+      /* while a divide moves each answer is shown, the newest as it comes; more is on its way */
+      if (quick->question->serial != work->serial)
+        quick->answer->complete = FALSE;
       if (quick->question->serial == work->serial || quick->question->ask.moving)
         work->answered (quick->answer, work->data);
-      if (!quick->answer->complete && quick->question->serial == work->serial)
+      if (quick->question->serial == work->serial && !quick->answer->complete)
         {
           g_clear_pointer (&work->to_draw, question_free);
           work->to_draw = g_steal_pointer (&quick->question);

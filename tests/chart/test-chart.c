@@ -65,14 +65,6 @@ picture_changed (const Picture *picture, TfColour ground)
   return (guint)(picture->width * picture->height) - picture_count (picture, ground, 0.01);
 }
 
-/* Read by the leak checker where there is one: fontconfig keeps what it read until the end. */
-const char *__lsan_default_suppressions (void);
-const char *
-__lsan_default_suppressions (void)
-{
-  return "leak:libfontconfig\n";
-}
-
 int
 main (int argc, char **argv)
 {
