@@ -18,13 +18,18 @@ static GMenuModel *
 menu_new (void)
 {
   GMenu *menu = g_menu_new ();
-  g_autoptr (GMenu) position = g_menu_new (), looks = g_menu_new ();
+  g_autoptr (GMenu) drawing = g_menu_new (), position = g_menu_new (), looks = g_menu_new ();
+  add (drawing, _ ("_Finish the line (Return)"), "win.finish-drawing");
   add (position, _ ("_Copy the position"), "win.copy-position");
   add (position, _ ("_Save the picture…"), "win.save-picture");
   add (looks, _ ("As _observed"), "win.look::disk");
   add (looks, _ ("_Unrolled"), "win.look::unrolled");
   add (looks, _ ("C_lose"), "win.look::close");
+  add (looks, _ ("Close look, and _back (V)"), "win.close-look");
   add (looks, _ ("Show the _whole Sun"), "win.fit");
+  add (looks, _ ("Zoom _in"), "win.zoom-in");
+  add (looks, _ ("_Zoom out"), "win.zoom-out");
+  g_menu_append_section (menu, NULL, G_MENU_MODEL (drawing));
   g_menu_append_section (menu, NULL, G_MENU_MODEL (position));
   g_menu_append_section (menu, NULL, G_MENU_MODEL (looks));
   return G_MENU_MODEL (menu);
