@@ -515,8 +515,12 @@ go_where_undone (TfSession *self, const TfDeed *deed)
 {
   TfFrameItem *item
       = deed->undone.frame != 0 ? tf_session_find_frame (self, deed->undone.frame) : NULL;
-  if (item != NULL && item != self->frame_item && deed->frame != deed->undone.frame)
-    tf_session_choose_frame (self, item);
+  if (item == NULL || item == self->frame_item || deed->frame == deed->undone.frame)
+    return;
+  tf_session_choose_frame (self, item);
+  self->want_new = FALSE;
+  g_free (self->want_region);
+  self->want_region = g_strdup (deed->undone.region);
 }
 
 static void

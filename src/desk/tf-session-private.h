@@ -105,6 +105,7 @@ struct _TfSession
   gboolean want_hint;
   gboolean want_next_hint;
   gboolean want_new; /* what undoing or redoing brings back is chosen */
+  char *want_region; /* the same on another frame, where there is nothing to compare with: its number; NULL */
 
   TfTool tool;
   GArray *line; /* TfVertex, Carrington */

@@ -73,6 +73,7 @@ finalize (GObject *object)
   g_free (self->frame_problem);
   g_free (self->saved);
   g_free (self->class_hoped);
+  g_free (self->want_region);
   g_free (self->person);
   g_free (self->method);
   g_free (self->progress);
@@ -202,6 +203,7 @@ tf_session_choose_region (TfSession *self, TfRegionItem *item)
 {
   g_return_if_fail (TF_IS_SESSION (self));
   self->want_mark = 0;
+  g_clear_pointer (&self->want_region, g_free);
   if (self->tool == TF_TOOL_JOIN && item != NULL && item != self->region)
     {
       tf_session_toggle_region (self, item);
@@ -256,10 +258,26 @@ find_new (TfSession *self, const GPtrArray *items)
   return NULL;
 }
 
+static TfRegionItem *
+find_mark_of (TfSession *self, const char *region)
+{
+  guint n = region != NULL && *region != '\0' ? g_list_model_get_n_items (G_LIST_MODEL (self->regions)) : 0;
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfRegionItem) item = g_list_model_get_item (G_LIST_MODEL (self->regions), k);
+      const TfRow *row = tf_region_item_get_row (item);
+      if (!row->is_hint && g_strcmp0 (row->region, region) == 0)
+        return item; /* the list holds it */
+    }
+  return NULL;
+}
+
 static void
 choose_again (TfSession *self, TfRegionItem *came_back)
 {
-  TfRegionItem *next = came_back;
+  TfRegionItem *next = came_back != NULL ? came_back : find_mark_of (self, self->want_region);
+  if (next != NULL)
+    g_clear_pointer (&self->want_region, g_free);
   if (next == NULL && self->want_mark != 0)
     next = find_choice (self, self->want_mark, self->want_hint);
   if (next != NULL)

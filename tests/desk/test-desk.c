@@ -123,6 +123,7 @@ main (int argc, char **argv)
   test_desk_add_geometry ();
   test_desk_add_list ();
   test_desk_add_window ();
+  test_desk_add_hand ();
   test_desk_add_keys ();
   test_desk_add_laws ();
   int result = g_test_run ();

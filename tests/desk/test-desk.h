@@ -20,6 +20,7 @@ gboolean test_desk_has_display (void);
 void test_desk_add_words (void);
 void test_desk_add_follow (void);
 void test_desk_add_geometry (void);
+void test_desk_add_hand (void);
 void test_desk_add_keys (void);
 void test_desk_add_list (void);
 void test_desk_add_plate (void);
