@@ -42,10 +42,19 @@ form_of (const char *path)
   return FORM_NONE;
 }
 
-static cairo_status_t
-take_bytes (void *into, const unsigned char *data, unsigned int n)
+typedef struct
 {
-  g_byte_array_append (into, data, n);
+  GByteArray *bytes;
+  const TfCancel *cancel;
+} Into;
+
+static cairo_status_t
+take_bytes (void *data, const unsigned char *bytes, unsigned int n)
+{
+  const Into *into = data;
+  if (tf_cancel_is_raised (into->cancel))
+    return CAIRO_STATUS_WRITE_ERROR;
+  g_byte_array_append (into->bytes, bytes, n);
   return CAIRO_STATUS_SUCCESS;
 }
 
@@ -60,17 +69,17 @@ set_properties (cairo_surface_t *surface, const TfFigurePage *page)
 }
 
 static cairo_surface_t *
-new_surface (Form form, const TfFigurePage *page, double width, double height, GByteArray *bytes)
+new_surface (Form form, const TfFigurePage *page, double width, double height, Into *into)
 {
   cairo_surface_t *surface;
   switch (form)
     {
     case FORM_PDF:
-      surface = cairo_pdf_surface_create_for_stream (take_bytes, bytes, width, height);
+      surface = cairo_pdf_surface_create_for_stream (take_bytes, into, width, height);
       set_properties (surface, page);
       return surface;
     case FORM_SVG:
-      surface = cairo_svg_surface_create_for_stream (take_bytes, bytes, width, height);
+      surface = cairo_svg_surface_create_for_stream (take_bytes, into, width, height);
       cairo_svg_surface_set_document_unit (surface, CAIRO_SVG_UNIT_PT);
       return surface;
     case FORM_PNG:
@@ -90,11 +99,11 @@ print_style (const TfFigurePage *page)
 }
 
 static cairo_status_t
-draw_page (Form form, const TfFigurePage *page, TfFigureFunc draw, gpointer data, GByteArray *bytes)
+draw_page (Form form, const TfFigurePage *page, TfFigureFunc draw, gpointer data, Into *into)
 {
   double width = page->width_mm * POINTS_A_MM, height = page->height_mm * POINTS_A_MM;
   TfChartStyle style = print_style (page);
-  cairo_surface_t *surface = new_surface (form, page, width, height, bytes);
+  cairo_surface_t *surface = new_surface (form, page, width, height, into);
   cairo_t *cr = cairo_create (surface);
   if (form == FORM_PNG)
     {
@@ -106,7 +115,7 @@ draw_page (Form form, const TfFigurePage *page, TfFigureFunc draw, gpointer data
   cairo_status_t status = cairo_status (cr);
   cairo_destroy (cr);
   if (status == CAIRO_STATUS_SUCCESS && form == FORM_PNG)
-    status = cairo_surface_write_to_png_stream (surface, take_bytes, bytes);
+    status = cairo_surface_write_to_png_stream (surface, take_bytes, into);
   cairo_surface_finish (surface);
   if (status == CAIRO_STATUS_SUCCESS)
     status = cairo_surface_status (surface);
@@ -127,8 +136,15 @@ tf_figure_write (const char *path, const TfFigurePage *page, TfFigureFunc draw, 
       return FALSE;
     }
   g_autoptr (GByteArray) bytes = g_byte_array_new ();
-  cairo_status_t status = draw_page (form, page, draw, data, bytes);
+  Into into = { bytes, page->cancel };
+  cairo_status_t status = draw_page (form, page, draw, data, &into);
   g_autoptr (GError) problem = NULL;
+  if (tf_cancel_is_raised (page->cancel))
+    {
+      g_set_error (error, TF_CHART_ERROR, TF_CHART_ERROR_STOPPED, _ ("%s was not written: cancelled"),
+                   path);
+      return FALSE;
+    }
   if (status == CAIRO_STATUS_SUCCESS
       && g_file_set_contents (path, (const char *)bytes->data, (gssize)bytes->len, &problem))
     return TRUE;

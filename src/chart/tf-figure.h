@@ -6,6 +6,7 @@
 /* Charts as files for print: PDF, SVG or PNG by the file's ending, one column wide, light ground,
  * fonts embedded. The same drawing as in the window. */
 
+#include "tf-bands.h"
 #include "tf-laws-charts.h"
 
 G_BEGIN_DECLS
@@ -16,6 +17,7 @@ typedef enum
 {
   TF_CHART_ERROR_ENDING, /* not .pdf, .svg or .png */
   TF_CHART_ERROR_WRITE,  /* the file cannot be written */
+  TF_CHART_ERROR_STOPPED /* cancelled: no file is written */
 } TfChartError;
 
 typedef struct
@@ -24,6 +26,7 @@ typedef struct
   double text_mm;             /* size of the labels; 2.3: 6.5 points */
   const char *title;          /* nullable; into the file's own properties */
   const char *subject;        /* nullable; the study in words */
+  TfCancel *cancel;           /* nullable; looked at before the file and while pixels are packed */
 } TfFigurePage;
 
 /** TfFigureFunc: draws into an area in units of a point (1/72 inch). */

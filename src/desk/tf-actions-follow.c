@@ -7,6 +7,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-followed-private.h"
+#include "tf-save-as.h"
 #include "tf-window-private.h"
 
 static const char *const take_names[] = { "flux", "meridian", "mean" };
@@ -260,43 +261,29 @@ ACTION (join_for)
 
 /* -- saving ---------------------------------------------------------------------------------- */
 
-static void
-save_to_path (TfWindow *window, const char *what, const char *path)
-{
-  g_autofree char *said = tf_follow_save (window, followed_of (window), what, path);
-  if (said != NULL)
-    tf_window_say (window, said);
-}
-
 ACTION (save_to)
 {
   const char *what, *path;
   g_variant_get (value, "(&s&s)", &what, &path);
-  save_to_path (window, what, path);
+  tf_follow_save (followed_of (window), what, path);
 }
 
 static void
-save_chosen (GtkNativeDialog *dialog, int response, TfWindow *window)
+save_chosen (TfWindow *window, const char *what, const char *path)
 {
-  g_autoptr (GFile) file = gtk_file_chooser_get_file (GTK_FILE_CHOOSER (dialog));
-  g_autofree char *path = file != NULL ? g_file_get_path (file) : NULL;
-  if (response == GTK_RESPONSE_ACCEPT && path != NULL)
-    save_to_path (window, g_object_get_data (G_OBJECT (dialog), "what"), path);
-  g_object_unref (dialog);
+  tf_follow_save (followed_of (window), what, path);
 }
 
 ACTION (save)
 {
   const char *what = g_variant_get_string (value, NULL);
   g_autofree char *name = tf_follow_dup_file_name (followed_of (window), what);
-  GtkFileChooserNative *chooser
-      = gtk_file_chooser_native_new (_ ("Save"), GTK_WINDOW (window), GTK_FILE_CHOOSER_ACTION_SAVE,
-                                     _ ("_Save"), _ ("_Cancel"));
-  gtk_native_dialog_set_modal (GTK_NATIVE_DIALOG (chooser), TRUE);
-  gtk_file_chooser_set_current_name (GTK_FILE_CHOOSER (chooser), name);
-  g_object_set_data_full (G_OBJECT (chooser), "what", g_strdup (what), g_free);
-  g_signal_connect_object (chooser, "response", G_CALLBACK (save_chosen), window, 0);
-  gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));
+  const char *title = strcmp (what, "figure") == 0
+                          ? _ ("Save strip and charts: PDF, SVG or PNG by the ending")
+                      : strcmp (what, "series") == 0
+                          ? _ ("Save the series: CSV, VOTable, FITS or JSON by the ending")
+                          : _ ("Save the film: .webm or .gif, or a folder for numbered PNG");
+  tf_save_as_ask (window, title, name, what, save_chosen);
 }
 
 /* -- together -------------------------------------------------------------------------------- */

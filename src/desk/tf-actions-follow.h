@@ -14,9 +14,8 @@ G_BEGIN_DECLS
 void tf_window_add_follow_actions (TfWindow *window, TfFollowed *followed);
 
 /* tf-follow-save.c */
-/** tf_follow_save: "figure", "series" or "film" into @path. Returns: (transfer full): what to say: that
- * it is done, or why it is not. NULL: said later (a film that is being encoded). */
-char *tf_follow_save (TfWindow *window, TfFollowed *followed, const char *what, const char *path);
+/** tf_follow_save: "figure", "series" or "film" into @path, off the main thread; what came of it is said by the session. */
+void tf_follow_save (TfFollowed *followed, const char *what, const char *path);
 /** tf_follow_dup_file_name: a name to offer */
 char *tf_follow_dup_file_name (TfFollowed *followed, const char *what);
 

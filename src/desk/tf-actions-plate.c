@@ -11,6 +11,7 @@
 #include "tf-plate-shot.h"
 #include "tf-preferences-dialog.h"
 #include "tf-preferences.h"
+#include "tf-save-as.h"
 
 static TfSession *
 session_of (gpointer window)
@@ -94,51 +95,24 @@ ACTION (copy_position)
 }
 
 static void
-picture_saved (GObject *source, GAsyncResult *result, gpointer data)
+save_picture_to (TfWindow *window, const char *what, const char *path)
 {
-  g_autofree char *path = data;
-  g_autoptr (GError) error = NULL;
-  gboolean good = tf_plate_shot_save_finish (result, &error);
-  g_autofree char *text
-      = good ? g_strdup_printf (_ ("The picture is saved as %s."), path) : g_strdup (error->message);
-  g_signal_emit_by_name (source, "message", text);
-}
-
-static void
-save_picture_to (TfSession *session, const char *path)
-{
-  if (tf_session_get_frame (session) != NULL)
-    tf_plate_shot_save (session, path, picture_saved, g_strdup (path));
-}
-
-static void
-picture_chosen (GtkNativeDialog *dialog, int response, gpointer window)
-{
-  g_autoptr (GFile) file = gtk_file_chooser_get_file (GTK_FILE_CHOOSER (dialog));
-  g_autofree char *path = file != NULL ? g_file_get_path (file) : NULL;
-  if (response == GTK_RESPONSE_ACCEPT && path != NULL)
-    save_picture_to (session_of (window), path);
-  g_object_unref (dialog);
+  if (tf_session_get_frame (session_of (window)) != NULL)
+    tf_plate_shot_save (session_of (window), path);
 }
 
 ACTION (save_picture)
 {
-  TfSession *session = session_of (window);
-  if (tf_session_get_frame (session) == NULL)
+  if (tf_session_get_frame (session_of (window)) == NULL)
     return;
-  g_autofree char *name = tf_plate_shot_dup_name (session);
-  GtkFileChooserNative *chooser = gtk_file_chooser_native_new (
-      _ ("Save the picture: PNG, SVG or PDF by its ending"), GTK_WINDOW (window),
-      GTK_FILE_CHOOSER_ACTION_SAVE, _ ("_Save"), _ ("_Cancel"));
-  gtk_native_dialog_set_modal (GTK_NATIVE_DIALOG (chooser), TRUE);
-  gtk_file_chooser_set_current_name (GTK_FILE_CHOOSER (chooser), name);
-  g_signal_connect_object (chooser, "response", G_CALLBACK (picture_chosen), window, 0);
-  gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));
+  g_autofree char *name = tf_plate_shot_dup_name (session_of (window));
+  tf_save_as_ask (window, _ ("Save the picture: PNG, SVG or PDF by its ending"), name, NULL,
+                  save_picture_to);
 }
 
 ACTION (save_picture_as)
 {
-  save_picture_to (session_of (window), g_variant_get_string (value, NULL));
+  save_picture_to (window, NULL, g_variant_get_string (value, NULL));
 }
 
 /* -- preferences */

@@ -10,8 +10,6 @@
 #include "tf-followed-private.h"
 #include "tf-slip-words.h"
 
-static const double clear_mu = 0.5;
-
 static void
 fact_free (gpointer data)
 {
@@ -97,44 +95,25 @@ dup_tilt (const TfMeasure *m)
   return g_strdup_printf ("%s° ± %s°", value, sigma);
 }
 
-static gboolean
-is_bracketed (const TfPassageContent *content, int point)
-{
-  return point > 0 && point + 1 < (int)content->rows->len;
-}
-
 static void
 add_taken (GPtrArray *facts, TfFollowed *followed, const TfPassageContent *content)
 {
   int taken = tf_followed_get_taken (followed);
-  TfTake take = tf_followed_get_take (followed);
-  double mean;
-  guint n = tf_followed_mean_tilt (followed, &mean);
-  if (taken >= 0)
-    {
-      const TfMeasure *m = measure_at (content, taken);
-      g_autofree char *day = tf_series_chart_dup_day (m->time);
-      gboolean flux = take == TF_TAKE_FLUX;
-      add (facts, flux ? _ ("greatest flux") : _ ("nearest meridian"),
-           flux && !is_bracketed (content, taken)
-               ? g_strdup_printf (_ ("%s (peak not bracketed)"), day)
-               : g_strdup (day),
-           flux ? _ ("Sampling rule: the mark of greatest unsigned flux among those with μ ≥ 0.5.")
-                : _ ("Sampling rule: the mark nearest the central meridian."));
-      add (facts, _ ("tilt then"), dup_tilt (m), NULL);
-      add (facts, _ ("flux then"), tf_chart_dup_flux (m->flux_unsigned_mx), _ ("Unsigned."));
-    }
-  TfTime from, to;
-  tf_followed_get_brush (followed, &from, &to);
-  if (n > 0 && tf_time_is_known (from))
-    {
-      g_autofree char *value = tf_words_dup_signed (mean, 1);
-      add (facts, _ ("mean of the stretch"), g_strdup_printf (ngettext ("%s° of %u mark", "%s° of %u marks", n), value, n),
-           _ ("Axial mean (doubled angles) of the axis tilt over |CMD| ≤ 45°, each mark once."));
-    }
+  if (taken < 0)
+    return;
+  const TfMeasure *m = measure_at (content, taken);
+  gboolean flux = tf_followed_get_take (followed) == TF_TAKE_FLUX;
+  gboolean open = flux && !tf_followed_get_derived (followed)->bracketed;
+  g_autofree char *day = tf_series_chart_dup_day (m->time);
+  add (facts, flux ? _ ("greatest flux") : _ ("nearest meridian"),
+       open ? g_strdup_printf (_ ("%s (peak not bracketed)"), day) : g_strdup (day),
+       flux ? _ ("Sampling rule: the mark of greatest unsigned flux among those with μ ≥ 0.5.")
+            : _ ("Sampling rule: the mark nearest the central meridian."));
+  add (facts, _ ("tilt then"), dup_tilt (m), NULL);
+  add (facts, _ ("flux then"), tf_chart_dup_flux (m->flux_unsigned_mx), _ ("Unsigned."));
 }
 
-/* What is derived from the whole passage, each with the window it was taken from. */
+/* What is derived from the passage, or the brushed stretch of it, each with the window it was taken from. */
 static char *
 dup_window (const TfFigure *figure, const char *method)
 {
@@ -157,11 +136,11 @@ add_rate (GPtrArray *facts, const char *name, const TfFigure *rate)
 }
 
 static void
-add_derived (GPtrArray *facts, const TfPassageContent *content)
+add_derived (GPtrArray *facts, TfFollowed *followed)
 {
-  if (content->series == NULL)
-    return;
-  const TfDerived *d = &content->series->derived;
+  const TfDerived *d = tf_followed_get_derived (followed);
+  TfTime from, to;
+  tf_followed_get_brush (followed, &from, &to);
   add_rate (facts, _ ("emerging at"), &d->emergence);
   add_rate (facts, _ ("decaying at"), &d->decay);
   if (!isfinite (d->tilt_mean.value))
@@ -174,40 +153,19 @@ add_derived (GPtrArray *facts, const TfPassageContent *content)
          "as %s."),
       n);
   g_autofree char *how = dup_window (&d->tilt_mean, method);
-  add (facts, _ ("mean tilt"), g_strdup_printf ("%s° ± %s°", value, sigma), how);
-}
-
-static void
-add_held (GPtrArray *facts, const TfPassageContent *content)
-{
-  guint n = 0, positive = 0;
-  for (guint k = 0; k < content->rows->len; k++)
-    {
-      const TfMeasure *m = measure_at (content, (int)k);
-      if (!(m->mu >= clear_mu) || m->leading_polarity == 0)
-        continue;
-      n++;
-      positive += m->leading_polarity > 0;
-    }
-  if (n == 0)
-    return;
-  gboolean plus = positive * 2 >= n;
-  add (facts, _ ("leading held"),
-       g_strdup_printf (_ ("%s in %u of %u at μ ≥ 0.5"), plus ? "+" : "−",
-                        plus ? positive : n - positive, n),
-       _ ("The polarity of the western pole, mark by mark."));
+  add (facts, tf_time_is_known (from) ? _ ("mean of the stretch") : _ ("mean tilt"), g_strdup_printf ("%s° ± %s°", value, sigma), how);
 }
 
 static void
 add_floor (GPtrArray *facts, const TfPassageContent *content)
 {
-  if (!isfinite (content->floor_gauss))
+  double floor = content->series->floor_gauss;
+  guint other = content->series->n_other_floor;
+  if (!isfinite (floor))
     return;
   add (facts, _ ("even floor"),
-       content->n_other_floor == 0
-           ? g_strdup_printf (_ ("%.0f G, all"), content->floor_gauss)
-           : g_strdup_printf (_ ("%.0f G; %u measured with another"), content->floor_gauss,
-                              content->n_other_floor),
+       other == 0 ? g_strdup_printf (_ ("%.0f G, all"), floor)
+                  : g_strdup_printf (_ ("%.0f G; %u measured with another"), floor, other),
        _ ("One floor for the whole passage, so that the flux of a constant region does not fall "
           "towards the limb. tiltfield-run laws or export measures what lacks it."));
 }
@@ -224,8 +182,7 @@ tf_follow_facts (TfFollowed *followed)
   add (facts, _ ("last seen"), dup_end (p->last_time, p->ended, FALSE), NULL);
   add (facts, _ ("missing"), dup_missing (content), NULL);
   add_taken (facts, followed, content);
-  add_derived (facts, content);
-  add_held (facts, content);
+  add_derived (facts, followed);
   add_floor (facts, content);
   return facts;
 }
@@ -235,32 +192,26 @@ tf_follow_facts (TfFollowed *followed)
 char *
 tf_follow_dup_verdict (TfFollowed *followed, int *diamond)
 {
-  const TfPassageContent *content = tf_followed_get_content (followed);
-  guint n = 0, keeps = 0, breaks = 0;
+  const TfDerived *d = tf_followed_get_derived (followed);
   *diamond = TF_DIAMOND_HOLLOW;
-  for (guint k = 0; content != NULL && k < content->rows->len; k++)
+  if (d == NULL)
+    return g_strdup ("");
+  switch (d->verdict.kind)
     {
-      if (!(measure_at (content, (int)k)->mu >= clear_mu))
-        continue;
-      n++;
-      keeps += content->verdicts[k].kind == TF_VERDICT_KEEPS;
-      breaks += content->verdicts[k].kind == TF_VERDICT_BREAKS;
-    }
-  if (n == 0)
-    return g_strdup (_ ("Hale’s law: cannot say, no mark at μ ≥ 0.5"));
-  if (keeps * 5 >= n * 4)
-    {
+    case TF_VERDICT_KEEPS:
       *diamond = TF_DIAMOND_PLAIN;
-      return g_strdup_printf (_ ("keeps Hale’s law, held %u of %u"), keeps, n);
-    }
-  if (breaks * 5 >= n * 4)
-    {
+      return g_strdup_printf (_ ("keeps Hale’s law, held %u of %u"), d->held, d->of);
+    case TF_VERDICT_BREAKS:
       *diamond = TF_DIAMOND_STRUCK;
-      return g_strdup_printf (_ ("breaks Hale’s law, held %u of %u"), breaks, n);
+      return g_strdup_printf (_ ("breaks Hale’s law, held %u of %u"), d->held, d->of);
+    case TF_VERDICT_CANNOT_SAY:
+    default:
+      break;
     }
-  if (keeps > 0 && breaks > 0)
-    return g_strdup_printf (_ ("cannot say: changes (keeps %u, breaks %u, of %u)"), keeps, breaks, n);
-  return g_strdup_printf (_ ("Hale’s law: cannot say in %u of %u marks"), n - keeps - breaks, n);
+  g_autoptr (TfNote) reason = tf_note_new (d->verdict.reason, "");
+  g_autofree char *words = tf_note_dup_text (reason, FALSE);
+  return d->held > 0 ? g_strdup_printf (_ ("%s (%u of %u)"), words, d->held, d->of)
+                     : g_strdup_printf (_ ("Hale’s law: %s"), words);
 }
 
 /* -- links ----------------------------------------------------------------------------------- */

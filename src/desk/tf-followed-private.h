@@ -40,8 +40,6 @@ struct _TfFollowed
   GListStore *passages, *looks, *beside_looks;
   TfPassageContent *content, *beside;
   char *problem;
-  double floor_gauss; /* even floor, worked out when the number of frames changed */
-  guint floor_frames;
   char *evened; /* passage, floor and number of marks that were measured so, or cannot be */
 
   int now;
@@ -49,6 +47,7 @@ struct _TfFollowed
   double speed;
   guint timer;
   TfTime from, to;
+  TfSeries *stretch; /* of the rows between them; NULL: all of the passage's */
   TfTake take;
 
   GCancellable *drawing; /* pictures */
@@ -63,8 +62,9 @@ void tf_followed_connect (TfFollowed *self);
 /** tf_followed_get_shown: the look to be drawn large: that in view, or while blinking the one before */
 int tf_followed_get_shown (TfFollowed *self);
 gboolean tf_followed_in_brush (TfFollowed *self, TfTime time);
-/** tf_followed_mean_tilt: axial mean over |CMD| <= 45 deg of the brushed stretch; number of marks */
-guint tf_followed_mean_tilt (TfFollowed *self, double *mean_deg);
+/** tf_followed_derive: the series of the brushed stretch. tf_followed_get_derived: (nullable): of it, else of the passage. */
+void tf_followed_derive (TfFollowed *self);
+const TfDerived *tf_followed_get_derived (TfFollowed *self);
 /** tf_followed_render: pictures that are not there yet, one frame after the other, those near the
  * look in view first. tf_followed_forget_pictures: the range or palette is another. */
 void tf_followed_render (TfFollowed *self);

@@ -19,9 +19,6 @@ typedef struct
   gint64 passage, beside;
   TfSight sight;
   gboolean writable;
-  TfJudge *judge;
-  double floor_gauss;
-  guint floor_frames, n_frames;
   /* brought */
   GPtrArray *passages;
   TfPassageContent *content, *beside_content;
@@ -31,10 +28,9 @@ static void
 reading_free (gpointer data)
 {
   Reading *r = data;
-  tf_judge_unref (r->judge);
   g_clear_pointer (&r->passages, g_ptr_array_unref);
-  g_clear_pointer (&r->content, tf_passage_content_free);
-  g_clear_pointer (&r->beside_content, tf_passage_content_free);
+  g_clear_pointer (&r->content, tf_passage_content_unref);
+  g_clear_pointer (&r->beside_content, tf_passage_content_unref);
   g_free (r);
 }
 
@@ -83,13 +79,7 @@ read_in_lane (TfLedger *ledger, gpointer data, GError **error)
   const Reading *asked = data;
   Reading *r = g_new0 (Reading, 1);
   *r = *asked;
-  r->judge = tf_judge_ref (asked->judge);
   gboolean fine = make_passages (ledger, asked, error);
-  if (fine && asked->n_frames != asked->floor_frames)
-    {
-      r->floor_gauss = tf_study_even_floor (ledger, NULL);
-      r->floor_frames = asked->n_frames;
-    }
   r->passages = fine ? tf_ledger_passages (ledger, error) : NULL;
   if (r->passages == NULL)
     {
@@ -98,10 +88,9 @@ read_in_lane (TfLedger *ledger, gpointer data, GError **error)
     }
   r->passage = wanted_passage (ledger, asked, r->passages);
   if (r->passage != 0)
-    r->content = tf_passage_content_read (ledger, r->passage, r->floor_gauss, r->judge, error);
+    r->content = tf_passage_content_read (ledger, r->passage, error);
   if (asked->beside != 0 && has_passage (r->passages, asked->beside) && r->content != NULL)
-    r->beside_content
-        = tf_passage_content_read (ledger, asked->beside, r->floor_gauss, r->judge, NULL);
+    r->beside_content = tf_passage_content_read (ledger, asked->beside, NULL);
   if (r->passage != 0 && r->content == NULL)
     {
       reading_free (r);
@@ -194,12 +183,11 @@ take (TfFollowed *self, Reading *r)
   g_cancellable_cancel (self->drawing);
   g_clear_object (&self->drawing);
   self->drawing = g_cancellable_new ();
-  self->floor_gauss = r->floor_gauss;
-  self->floor_frames = r->floor_frames;
+  g_clear_pointer (&self->stretch, tf_series_free);
   self->taking = TRUE;
   take_passages (self, r->passages);
-  g_clear_pointer (&self->content, tf_passage_content_free);
-  g_clear_pointer (&self->beside, tf_passage_content_free);
+  g_clear_pointer (&self->content, tf_passage_content_unref);
+  g_clear_pointer (&self->beside, tf_passage_content_unref);
   self->content = g_steal_pointer (&r->content);
   self->beside = g_steal_pointer (&r->beside_content);
   self->want = tf_followed_get_chosen (self);
@@ -209,6 +197,7 @@ take (TfFollowed *self, Reading *r)
   self->now = find_now (self, before, time, r->sight);
   if (before != self->want)
     self->from = self->to = TF_TIME_UNKNOWN;
+  tf_followed_derive (self);
   self->want_sight = (TfSight){ 0 };
   g_clear_pointer (&self->problem, g_free);
   if (self->content == NULL)
@@ -255,17 +244,17 @@ static void
 measure_even (TfFollowed *self)
 {
   const TfPassageContent *c = self->content;
-  if (c == NULL || c->n_other_floor == 0 || !isfinite (self->floor_gauss)
-      || !tf_session_is_writable (self->session))
+  double floor = c != NULL ? c->series->floor_gauss : NAN;
+  if (!isfinite (floor) || c->series->n_other_floor == 0 || !tf_session_is_writable (self->session))
     return;
   g_autofree char *now
-      = g_strdup_printf ("%s %.0f %u", c->passage->content_id, self->floor_gauss, c->rows->len);
+      = g_strdup_printf ("%s %.0f %u", c->passage->content_id, floor, c->rows->len);
   if (g_strcmp0 (now, self->evened) == 0)
     return;
   g_free (self->evened);
   self->evened = g_steal_pointer (&now);
   Evening *asked = g_new (Evening, 1);
-  *asked = (Evening){ c->passage->id, self->floor_gauss };
+  *asked = (Evening){ c->passage->id, floor };
   self->reading++;
   tf_lane_push (self->lane, self, self->cancellable, even_in_lane, asked, g_free, NULL, evened, NULL);
 }
@@ -313,7 +302,6 @@ open_lane (TfFollowed *self)
   self->want = self->want_beside = 0;
   self->want_sight = (TfSight){ 0 };
   self->now = -1;
-  self->floor_frames = 0;
   if (path == NULL || !tf_session_has_ledger (self->session))
     return;
   self->lane_path = g_strdup (path);
@@ -334,10 +322,6 @@ start_reading (TfFollowed *self)
   asked->sight = self->want_sight;
   asked->beside = self->want_beside;
   asked->writable = tf_session_is_writable (self->session);
-  asked->judge = tf_judge_ref (tf_session_get_judge (self->session));
-  asked->floor_gauss = self->floor_gauss;
-  asked->floor_frames = self->floor_frames;
-  asked->n_frames = tf_session_get_n_frames (self->session);
   self->reading++;
   tf_lane_push (self->lane, self, self->cancellable, read_in_lane, asked, reading_free,
                 reading_free, read_done, NULL);

@@ -10,7 +10,7 @@ G_DEFINE_FINAL_TYPE (TfFollowed, tf_followed, G_TYPE_OBJECT)
 static const char *const signal_names[TF_N_FOLLOWED_SIGNALS]
     = { "passages-changed", "passage-changed", "moment-changed", "busy-changed" };
 static guint signal_ids[TF_N_FOLLOWED_SIGNALS];
-static const double fastest = 30, slowest = 0.5, clear_mu = 0.5, mean_cmd_deg = 45;
+static const double fastest = 30, slowest = 0.5;
 
 void
 tf_followed_emit (TfFollowed *self, TfFollowedSignal signal)
@@ -228,6 +228,7 @@ tf_followed_brush (TfFollowed *self, TfTime from, TfTime to)
   gboolean all = !tf_time_is_known (from) || !tf_time_is_known (to);
   self->from = all ? TF_TIME_UNKNOWN : (TfTime){ fmin (from.s, to.s) };
   self->to = all ? TF_TIME_UNKNOWN : (TfTime){ fmax (from.s, to.s) };
+  tf_followed_derive (self);
   tf_followed_emit (self, TF_FOLLOWED_MOMENT);
 }
 
@@ -258,15 +259,31 @@ tf_followed_in_brush (TfFollowed *self, TfTime time)
   return !tf_time_is_known (self->from) || (time.s >= self->from.s && time.s <= self->to.s);
 }
 
-static double
-merit (const TfRow *row, TfTake take)
+/* The rows stay the content's. */
+void
+tf_followed_derive (TfFollowed *self)
 {
-  const TfMeasure *m = &row->measure;
-  if (take == TF_TAKE_FLUX)
-    return m->mu >= clear_mu ? m->flux_unsigned_mx : NAN;
-  return isfinite (m->cmd_deg) ? -fabs (m->cmd_deg) : NAN;
+  const TfPassageContent *c = self->content;
+  g_clear_pointer (&self->stretch, tf_series_free);
+  if (c == NULL || !tf_time_is_known (self->from))
+    return;
+  GPtrArray *rows = g_ptr_array_new ();
+  for (guint k = 0; k < c->rows->len; k++)
+    if (tf_followed_in_brush (self, ((const TfRow *)g_ptr_array_index (c->rows, k))->measure.time))
+      g_ptr_array_add (rows, g_ptr_array_index (c->rows, k));
+  self->stretch = tf_series_new (rows, c->study, c->series->floor_gauss, &c->series->params);
 }
 
+const TfDerived *
+tf_followed_get_derived (TfFollowed *self)
+{
+  const TfSeries *series = self->stretch != NULL    ? self->stretch
+                           : self->content != NULL ? self->content->series
+                                                   : NULL;
+  return series != NULL ? &series->derived : NULL;
+}
+
+/* The sampling rule's mark among those that stand for their frames. */
 int
 tf_followed_get_taken (TfFollowed *self)
 {
@@ -274,37 +291,19 @@ tf_followed_get_taken (TfFollowed *self)
   double most = NAN;
   if (self->content == NULL || self->take == TF_TAKE_MEAN)
     return -1;
-  for (guint k = 0; k < self->content->rows->len; k++)
+  const GArray *points = self->content->series->points;
+  for (guint k = 0; k < points->len; k++)
     {
-      const TfRow *row = g_ptr_array_index (self->content->rows, k);
-      double value = merit (row, self->take);
-      if (tf_followed_in_brush (self, row->measure.time) && isfinite (value)
-          && (best < 0 || value > most))
-        {
-          best = (int)k;
-          most = value;
-        }
+      const TfSeriesPoint *p = &g_array_index (points, TfSeriesPoint, k);
+      double value = self->take == TF_TAKE_FLUX ? p->flux_mx : -fabs (p->cmd_deg);
+      guint barred = TF_POINT_SECOND | (self->take == TF_TAKE_FLUX ? TF_POINT_LIMB : 0);
+      if ((p->flags & barred) != 0 || !tf_followed_in_brush (self, p->time) || !isfinite (value)
+          || (best >= 0 && value <= most))
+        continue;
+      best = (int)k;
+      most = value;
     }
   return best;
-}
-
-guint
-tf_followed_mean_tilt (TfFollowed *self, double *mean_deg)
-{
-  double c = 0, s = 0;
-  guint n = 0;
-  for (guint k = 0; self->content != NULL && k < self->content->rows->len; k++)
-    {
-      const TfMeasure *m = &((const TfRow *)g_ptr_array_index (self->content->rows, k))->measure;
-      if (!tf_followed_in_brush (self, m->time) || !(fabs (m->cmd_deg) <= mean_cmd_deg)
-          || !isfinite (m->axis_tilt_deg))
-        continue;
-      c += cos (2 * m->axis_tilt_deg * G_PI / 180);
-      s += sin (2 * m->axis_tilt_deg * G_PI / 180);
-      n++;
-    }
-  *mean_deg = n > 0 ? atan2 (s, c) / 2 * 180 / G_PI : NAN;
-  return n;
 }
 
 /* -- what people say ------------------------------------------------------------------------- */
@@ -400,8 +399,9 @@ dispose (GObject *object)
   g_clear_object (&self->passages);
   g_clear_object (&self->looks);
   g_clear_object (&self->beside_looks);
-  g_clear_pointer (&self->content, tf_passage_content_free);
-  g_clear_pointer (&self->beside, tf_passage_content_free);
+  g_clear_pointer (&self->stretch, tf_series_free);
+  g_clear_pointer (&self->content, tf_passage_content_unref);
+  g_clear_pointer (&self->beside, tf_passage_content_unref);
   g_clear_pointer (&self->problem, g_free);
   g_clear_pointer (&self->evened, g_free);
   G_OBJECT_CLASS (tf_followed_parent_class)->dispose (object);
@@ -425,5 +425,4 @@ tf_followed_init (TfFollowed *self)
   self->now = -1;
   self->speed = 4;
   self->from = self->to = TF_TIME_UNKNOWN;
-  self->floor_gauss = NAN;
 }

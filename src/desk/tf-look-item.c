@@ -65,6 +65,39 @@ tf_look_item_get_look (TfLookItem *self)
   return &self->look;
 }
 
+/* A surface is no thing for two threads, its pixels are: the copy lies over them and keeps them. */
+static cairo_surface_t *
+over_pixels (cairo_surface_t *picture)
+{
+  static const cairo_user_data_key_t keeps = { 0 };
+  cairo_surface_t *over = cairo_image_surface_create_for_data (
+      cairo_image_surface_get_data (picture), cairo_image_surface_get_format (picture),
+      cairo_image_surface_get_width (picture), cairo_image_surface_get_height (picture),
+      cairo_image_surface_get_stride (picture));
+  cairo_surface_set_user_data (over, &keeps, cairo_surface_reference (picture),
+                               (cairo_destroy_func_t)cairo_surface_destroy);
+  return over;
+}
+
+void
+tf_look_item_copy_look (TfLookItem *self, TfStripLook *copy)
+{
+  *copy = self->look;
+  copy->caption = g_strdup (self->look.caption);
+  copy->why = g_strdup (self->look.why);
+  copy->edge = g_memdup2 (self->look.edge, 2 * sizeof (double) * self->look.n_edge);
+  copy->picture = self->look.picture != NULL ? over_pixels (self->look.picture) : NULL;
+}
+
+void
+tf_look_copy_clear (TfStripLook *copy)
+{
+  g_free ((char *)copy->caption);
+  g_free ((char *)copy->why);
+  g_free ((double *)copy->edge);
+  g_clear_pointer (&copy->picture, cairo_surface_destroy);
+}
+
 void
 tf_look_item_take_picture (TfLookItem *self, cairo_surface_t *picture, const char *why)
 {

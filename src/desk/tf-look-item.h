@@ -48,6 +48,10 @@ TfLookItem *tf_look_item_new (TfLookSpec *spec);
 const TfLookSpec *tf_look_item_get_spec (TfLookItem *item);
 /** tf_look_item_get_look: what is to be drawn; borrowed */
 const TfStripLook *tf_look_item_get_look (TfLookItem *item);
+/** tf_look_item_copy_look: one that belongs to nobody else: for another thread. Its pixels are those of the picture, which never
+ * change. tf_look_copy_clear: done with it. */
+void tf_look_item_copy_look (TfLookItem *item, TfStripLook *copy);
+void tf_look_copy_clear (TfStripLook *copy);
 /** tf_look_item_take_picture: (transfer full) (nullable) @picture; @why: (nullable): there is none */
 void tf_look_item_take_picture (TfLookItem *item, cairo_surface_t *picture, const char *why);
 /** tf_look_item_want_picture: another one is to come; the old one stands until then */

@@ -11,21 +11,30 @@
 static const double gap_steps = 2.2, margin = 1.2, least_half_deg = 3, most_half_deg = 20,
                     day_s = 86400, around_days = 1.05;
 
-void
-tf_passage_content_free (TfPassageContent *c)
+static void
+content_clear (gpointer data)
 {
-  if (c == NULL)
-    return;
+  TfPassageContent *c = data;
   g_clear_pointer (&c->passage, tf_passage_row_free);
-  g_clear_pointer (&c->rows, g_ptr_array_unref);
   g_clear_pointer (&c->points, g_array_unref);
   g_clear_pointer (&c->looks, g_ptr_array_unref);
   g_clear_pointer (&c->series, tf_series_free);
   g_clear_pointer (&c->links, g_array_unref);
   g_clear_pointer (&c->returns, g_array_unref);
   g_clear_pointer (&c->others, g_ptr_array_unref);
-  g_free (c->verdicts);
-  g_free (c);
+  g_clear_pointer (&c->study, tf_study_free);
+}
+
+TfPassageContent *
+tf_passage_content_ref (TfPassageContent *c)
+{
+  return g_atomic_rc_box_acquire (c);
+}
+
+void
+tf_passage_content_unref (TfPassageContent *c)
+{
+  g_atomic_rc_box_release_full (c, content_clear);
 }
 
 int
@@ -279,34 +288,18 @@ add_points (TfPassageContent *c)
     }
 }
 
-/* Read beside the rows, which it takes. */
-static void
-add_derived (TfPassageContent *c, TfLedger *ledger)
+static gboolean
+read_series (TfPassageContent *c, TfLedger *ledger, GError **error)
 {
   TfSeriesParams params;
-  g_autoptr (TfStudy) study = tf_study_new_default ();
   tf_series_params_init (&params);
-  if (isfinite (c->floor_gauss) && tf_study_read_divides (study, ledger, NULL))
-    c->series = tf_series_read (ledger, c->passage->id, c->floor_gauss, study, &params, NULL);
-}
-
-static gboolean
-read_rows (TfPassageContent *c, TfLedger *ledger, GError **error)
-{
-  TfRowQuery query
-      = { .marks = TRUE, .hints = TRUE, .passage = c->passage->id, .complexity = TRUE };
-  c->rows = isfinite (c->floor_gauss) ? tf_study_rows (ledger, &query, c->floor_gauss, error)
-                                      : tf_ledger_rows (ledger, &query, error);
-  if (c->rows == NULL)
+  c->study = tf_study_new_default ();
+  double floor = tf_series_floor (ledger, c->passage->id, error);
+  if (!tf_study_read_divides (c->study, ledger, error))
     return FALSE;
-  for (guint k = 0; k < c->rows->len; k++)
-    {
-      const TfRow *row = g_ptr_array_index (c->rows, k);
-      if (!(row->measure.floor_kind == TF_FLOOR_EVEN
-            && fabs (row->measure.floor_gauss - c->floor_gauss) <= 0.005 * c->floor_gauss))
-        c->n_other_floor++;
-    }
-  return TRUE;
+  c->series = tf_series_read (ledger, c->passage->id, floor, c->study, &params, error);
+  c->rows = c->series != NULL ? c->series->rows : NULL;
+  return c->series != NULL;
 }
 
 static gboolean
@@ -338,19 +331,16 @@ read_others (TfPassageContent *c, TfLedger *ledger, GError **error)
 }
 
 TfPassageContent *
-tf_passage_content_read (TfLedger *ledger, gint64 passage, double floor_gauss, const TfJudge *judge,
-                         GError **error)
+tf_passage_content_read (TfLedger *ledger, gint64 passage, GError **error)
 {
-  g_autoptr (TfPassageContent) c = g_new0 (TfPassageContent, 1);
-  c->floor_gauss = floor_gauss;
+  g_autoptr (TfPassageContent) c = g_atomic_rc_box_new0 (TfPassageContent);
   c->points = g_array_new (FALSE, FALSE, sizeof (TfSeriesMoment));
-  c->others = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_passage_row_free);
   c->looks = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_look_spec_free);
   c->others = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_passage_row_free);
   c->passage = tf_ledger_passage (ledger, passage, error);
   if (c->passage == NULL)
     return NULL;
-  if (!read_rows (c, ledger, error) || !read_others (c, ledger, error))
+  if (!read_series (c, ledger, error) || !read_others (c, ledger, error))
     return NULL;
   double around = around_days * day_s;
   g_autoptr (GPtrArray) frames = tf_ledger_frames_between (
@@ -359,13 +349,6 @@ tf_passage_content_read (TfLedger *ledger, gint64 passage, double floor_gauss, c
   if (frames == NULL)
     return NULL;
   add_points (c);
-  add_derived (c, ledger);
-  c->verdicts = g_new0 (TfVerdict, MAX (c->rows->len, 1));
-  for (guint k = 0; k < c->rows->len; k++)
-    {
-      const TfRow *row = g_ptr_array_index (c->rows, k);
-      c->verdicts[k] = tf_judge_measure (judge, &row->measure, NULL);
-    }
   if (c->rows->len > 0)
     {
       TfFollowParams params;

@@ -4,9 +4,8 @@
 #pragma once
 
 /* TfPassageContent: all that the Follow bench shows of one passage but the pictures, read in one go
- * off the main thread. Measures are with the passage's one even floor where they are there. */
+ * off the main thread. Measures are with the passage's one even floor (the one that export uses) where they are there. */
 
-#include "tf-judge.h"
 #include "tf-ledger-follow.h"
 #include "tf-look-item.h"
 #include "tf-series-chart.h"
@@ -23,28 +22,26 @@ enum
 typedef struct
 {
   TfPassageRow *passage;
-  GPtrArray *rows;   /* TfRow, with outlines, in time order */
+  TfStudy *study;    /* default, with the divides that people moved */
+  TfSeries *series;  /* rows judged under the study, and what is derived from them */
+  GPtrArray *rows;   /* TfRow, with outlines, in time order: the series' own */
   GArray *points;    /* TfSeriesMoment, one a row */
   GPtrArray *looks;  /* TfLookSpec: rows, frames without one between them, gaps; in time order.
                         Taken by who makes items of them */
-  TfSeries *series;  /* what is derived from the rows; NULL when that cannot be had */
   GArray *links;     /* TfPassageLink */
   GArray *returns;   /* TfReturnOffer */
   GPtrArray *others; /* TfPassageRow: the other passages of the region, and those of the offers */
-  double floor_gauss; /* even floor of the measures; NaN: each its own */
-  guint n_other_floor;
-  TfVerdict *verdicts; /* one a row */
   double half_deg;     /* half the height of a look */
 } TfPassageContent;
 
-/** tf_passage_content_read: @floor_gauss: even floor of the measures, NaN: each its own. NULL with an
- * error. */
-TfPassageContent *tf_passage_content_read (TfLedger *ledger, gint64 passage, double floor_gauss,
-                                           const TfJudge *judge, GError **error);
-void tf_passage_content_free (TfPassageContent *content);
+/** tf_passage_content_read: NULL with an error. */
+TfPassageContent *tf_passage_content_read (TfLedger *ledger, gint64 passage, GError **error);
+/** tf_passage_content_ref: nothing of it changes once it is taken; threads may share it. */
+TfPassageContent *tf_passage_content_ref (TfPassageContent *content);
+void tf_passage_content_unref (TfPassageContent *content);
 /** tf_passage_content_find: index of the row of that mark or hint, -1 */
 int tf_passage_content_find (const TfPassageContent *content, TfSight sight);
 
-G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPassageContent, tf_passage_content_free)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPassageContent, tf_passage_content_unref)
 
 G_END_DECLS

@@ -12,6 +12,7 @@
 #include "tf-number.h"
 #include "tf-plate-figure.h"
 #include "tf-plate-overlay.h"
+#include "tf-save-as.h"
 
 /* Wide enough for a page with its margins; labels of 7 points. */
 static const double width_mm = 150, text_mm = 2.5;
@@ -23,7 +24,7 @@ enum
 
 typedef struct
 {
-  char *path, *head, *title;
+  char *head, *title;
   TfFrame *frame;
   TfView view;
   TfPaint paint;
@@ -36,7 +37,6 @@ static void
 shot_free (gpointer data)
 {
   Shot *shot = data;
-  g_free (shot->path);
   g_free (shot->head);
   g_free (shot->title);
   tf_frame_unref (shot->frame);
@@ -120,22 +120,21 @@ draw (cairo_t *cr, const TfChartStyle *style, TfArea area, gpointer data)
   tf_plate_figure_draw (cr, &shot->figure, style, area);
 }
 
-static void
-save_in_thread (GTask *task, gpointer source, gpointer data, GCancellable *cancellable)
+static char *
+save (TfSaving *saving, gpointer job, const char *path, GError **error)
 {
-  Shot *shot = data;
-  GError *error = NULL;
+  Shot *shot = job;
   TfChartStyle style = tf_chart_style (FALSE, FALSE, text_mm * 72 / 25.4);
   double width = width_mm * 72 / 25.4;
   shot->figure.picture = new_picture (shot);
-  TfFigurePage page = { .width_mm = width_mm, .text_mm = text_mm, .title = shot->title };
+  TfFigurePage page = { .width_mm = width_mm,
+                        .text_mm = text_mm,
+                        .title = shot->title,
+                        .cancel = tf_saving_get_cancel (saving) };
   page.height_mm = tf_plate_figure_height (&shot->figure, &style, width) * 25.4 / 72;
-  gboolean good = tf_figure_write (shot->path, &page, draw, shot, &error);
+  gboolean good = tf_figure_write (path, &page, draw, shot, error);
   cairo_surface_destroy (shot->figure.picture);
-  if (good)
-    g_task_return_boolean (task, TRUE);
-  else
-    g_task_return_error (task, error);
+  return good ? g_strdup_printf (_ ("The picture is saved as %s."), path) : NULL;
 }
 
 /* -- on the main thread ---------------------------------------------------------------------- */
@@ -164,13 +163,12 @@ fill_figure (Shot *shot, TfSession *session)
 }
 
 void
-tf_plate_shot_save (TfSession *session, const char *path, GAsyncReadyCallback done, gpointer data)
+tf_plate_shot_save (TfSession *session, const char *path)
 {
   g_return_if_fail (TF_IS_SESSION (session) && path != NULL);
   TfFrame *frame = tf_session_get_frame (session);
   g_return_if_fail (frame != NULL);
   Shot *shot = g_new0 (Shot, 1);
-  shot->path = g_strdup (path);
   shot->frame = tf_frame_ref (frame);
   shot->view = *tf_session_get_view (session);
   shot->paint = (TfPaint){ .range_gauss = tf_session_get_range (session),
@@ -183,15 +181,7 @@ tf_plate_shot_save (TfSession *session, const char *path, GAsyncReadyCallback do
   shot->title = g_strdup (shot->head);
   tf_plate_overlay_collect (&shot->over, session, &shot->view, 0);
   fill_figure (shot, session);
-  g_autoptr (GTask) task = g_task_new (session, NULL, done, data);
-  g_task_set_task_data (task, shot, shot_free);
-  g_task_run_in_thread (task, save_in_thread);
-}
-
-gboolean
-tf_plate_shot_save_finish (GAsyncResult *result, GError **error)
-{
-  return g_task_propagate_boolean (G_TASK (result), error);
+  tf_save_as (session, path, save, shot, shot_free);
 }
 
 /* -- a position ------------------------------------------------------------------------------ */

@@ -6,16 +6,12 @@
 /* The plate as it is now, as a file: PNG, SVG or PDF by the file's ending, made off the main
  * thread. And a position of it as a line of text. */
 
-#include <gio/gio.h>
-
 #include "tf-session.h"
 
 G_BEGIN_DECLS
 
-/** tf_plate_shot_save: @done: GTask of a boolean; what is seen later does not change it. */
-void tf_plate_shot_save (TfSession *session, const char *path, GAsyncReadyCallback done,
-                         gpointer data);
-gboolean tf_plate_shot_save_finish (GAsyncResult *result, GError **error);
+/** tf_plate_shot_save: what is seen later does not change it; what came of it is said by the session. */
+void tf_plate_shot_save (TfSession *session, const char *path);
 /** tf_plate_shot_dup_name: "brindle-20131012T0600.png": a name to begin with */
 char *tf_plate_shot_dup_name (TfSession *session);
 

@@ -72,6 +72,7 @@ struct _TfSession
   TfFeed *feed;
   char *progress; /* words of the feed */
   double progress_share;
+  struct _TfSaving *saving; /* tf-save-as.c */
   char **to_add;      /* frames that wait until the ledger is open or others are in */
   TfRollFilter roll_filter;
   char *roll_instrument; /* NULL: all */

@@ -5,6 +5,7 @@
 
 #include <math.h>
 
+#include "tf-save-as.h"
 #include "tf-session-laws-private.h"
 
 G_DEFINE_FINAL_TYPE (TfSession, tf_session, G_TYPE_OBJECT)
@@ -40,6 +41,7 @@ static void
 dispose (GObject *object)
 {
   TfSession *self = TF_SESSION (object);
+  tf_save_as_close (self);
   tf_session_close (self);
   tf_session_clear_witness (self);
   tf_session_clear_roll (self);

@@ -10,6 +10,7 @@
 #include <string.h>
 
 #include "tf-preferences.h"
+#include "tf-save-as.h"
 
 static const double zoom_step = 1.4;
 static const char *const look_names[] = { "disk", "unrolled", "close" };
@@ -230,6 +231,7 @@ tf_window_add_actions (TfWindow *self)
 {
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
   tf_window_add_plate_actions (self);
+  tf_save_as_add_actions (self);
   tf_window_add_frame_actions (self);
   tf_window_add_list_actions (self);
   tf_window_add_tool_actions (self);

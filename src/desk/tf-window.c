@@ -17,6 +17,7 @@
 #include "tf-roll.h"
 #include "tf-slip-words.h"
 #include "tf-slip.h"
+#include "tf-save-as.h"
 #include "tf-widget-style.h"
 #include "tf-window-private.h"
 #include "tf-wings-view.h"
@@ -27,9 +28,10 @@ struct _TfWindow
   AdwToastOverlay *toasts;
   GtkStack *stack, *benches;
   GtkMenuButton *ledger_button;
-  GtkLabel *ledger_name, *age, *problem, *ledger_problem, *feed_trouble, *wings_words;
+  GtkLabel *ledger_name, *age, *problem, *ledger_problem, *feed_trouble, *wings_words, *saving;
   GtkButton *person_button;
-  GtkRevealer *problem_bar, *ledger_bar, *feed_bar, *loose_bar;
+  GtkRevealer *problem_bar, *ledger_bar, *feed_bar, *loose_bar, *saving_bar;
+  GtkProgressBar *saving_share;
   GtkWidget *wings_offer, *make_here;
   AdwClamp *roll_clamp, *slip_clamp;
   TfRoll *roll;
@@ -210,6 +212,15 @@ show_bar (GtkRevealer *bar, GtkLabel *label, const char *text)
 }
 
 static void
+show_saving (TfWindow *self)
+{
+  double share;
+  show_bar (self->saving_bar, self->saving, tf_save_as_get_words (self->session, &share));
+  gtk_widget_set_visible (GTK_WIDGET (self->saving_share), share >= 0);
+  gtk_progress_bar_set_fraction (self->saving_share, CLAMP (share, 0, 1));
+}
+
+static void
 ledger_changed (TfWindow *self)
 {
   g_autofree char *name = tf_session_dup_ledger_name (self->session);
@@ -251,6 +262,7 @@ status_changed (TfWindow *self)
                             problem, pending - 1);
   show_bar (self->problem_bar, self->problem, text != NULL ? text : problem);
   show_bar (self->feed_bar, self->feed_trouble, tf_session_get_feed_trouble (self->session));
+  show_saving (self);
   show_page (self);
   tf_window_update_actions (self);
 }
@@ -449,6 +461,9 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfWindow, feed_bar);
   gtk_widget_class_bind_template_child (widget, TfWindow, feed_trouble);
   gtk_widget_class_bind_template_child (widget, TfWindow, loose_bar);
+  gtk_widget_class_bind_template_child (widget, TfWindow, saving_bar);
+  gtk_widget_class_bind_template_child (widget, TfWindow, saving);
+  gtk_widget_class_bind_template_child (widget, TfWindow, saving_share);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_offer);
   gtk_widget_class_bind_template_child (widget, TfWindow, make_here);
   gtk_widget_class_bind_template_child (widget, TfWindow, wings_words);

@@ -291,7 +291,7 @@ write_page (const char *path, const TfShift *shift, const char *who, GError **er
                          .notes = (const char *const *)notes->pdata,
                          .cautions = (const char *const *)cautions->pdata };
   memcpy (sheet.widths, widths, sizeof widths);
-  const TfFigurePage page = { 297, 210, 3.0, title, subtitle };
+  const TfFigurePage page = { .width_mm = 297, .height_mm = 210, .text_mm = 3.0, .title = title, .subject = subtitle };
   return tf_figure_write (path, &page, draw, &sheet, error);
 }
 

@@ -6,9 +6,11 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-actions-follow.h"
 #include "tf-check.h"
-#include "tf-followed.h"
+#include "tf-follow-film.h"
 #include "tf-intake.h"
+#include "tf-save-as.h"
 
 /* A ledger of the demo's October 2013: a region that crosses the disk. */
 
@@ -76,7 +78,7 @@ is_settled (gpointer data)
   Bench *bench = data;
   const TfPassageContent *content = tf_followed_get_content (bench->followed);
   return has_content (data) && tf_session_get_progress (bench->session, NULL) == NULL
-         && tf_session_get_pending (bench->session) == 0 && content->n_other_floor == 0;
+         && tf_session_get_pending (bench->session) == 0 && content->series->n_other_floor == 0;
 }
 
 static const TfLookSpec *
@@ -166,7 +168,7 @@ has_left (gpointer data)
 {
   Bench *bench = data;
   const TfPassageContent *content = tf_followed_get_content (bench->followed);
-  return content != NULL && content->n_other_floor == 0 && !tf_followed_is_busy (bench->followed) && content->rows->len == bench->n_left;
+  return content != NULL && content->series->n_other_floor == 0 && !tf_followed_is_busy (bench->followed) && content->rows->len == bench->n_left;
 }
 
 /* A cut is a deed: the passage ends there, the journal has the reason, undo brings it back. */
@@ -220,9 +222,146 @@ taken_mark_follows_the_rule (void)
   bench_clear (&bench);
 }
 
+/* -- files ----------------------------------------------------------------------------------- */
+
+typedef struct
+{
+  char *said;
+  gint64 last, longest; /* us between two turns of the main loop */
+} Watch;
+
+static void
+keep_said (TfSession *session, const char *text, Watch *watch)
+{
+  g_free (watch->said);
+  watch->said = g_strdup (text);
+}
+
+static gboolean
+turned (gpointer data)
+{
+  Watch *watch = data;
+  gint64 now = g_get_monotonic_time ();
+  if (watch->last != 0)
+    watch->longest = MAX (watch->longest, now - watch->last);
+  watch->last = now;
+  return G_SOURCE_CONTINUE;
+}
+
+enum
+{
+  MOST_SECONDS = 60
+};
+
+static double
+save (Bench *bench, Watch *watch, const char *what, const char *path)
+{
+  gint64 begun = g_get_monotonic_time ();
+  *watch = (Watch){ 0 };
+  gulong id = g_signal_connect (bench->session, "message", G_CALLBACK (keep_said), watch);
+  guint timer = g_timeout_add (1, turned, watch);
+  tf_follow_save (bench->followed, what, path);
+  while (tf_save_as_is_busy (bench->session)
+         && g_get_monotonic_time () - begun < MOST_SECONDS * G_USEC_PER_SEC)
+    g_main_context_iteration (NULL, TRUE);
+  g_assert_false (tf_save_as_is_busy (bench->session));
+  g_source_remove (timer);
+  g_signal_handler_disconnect (bench->session, id);
+  return (double)(g_get_monotonic_time () - begun) / 1e6;
+}
+
+/* 600 dots an inch take seconds of a processor; the window turns meanwhile. */
+static void
+saving_leaves_the_window_live (void)
+{
+  Bench bench = bench_new ("follow-save.ledger");
+  test_desk_wait ("every frame in", is_settled, &bench);
+  test_desk_wait ("all pictures", has_pictures, &bench);
+  static const char *const files[][3]
+      = { { "figure", "strip.png", "\211PNG" }, { "figure", "strip.pdf", "%PDF" },
+          { "figure", "strip.svg", "<?xml" },    { "series", "series.csv", "# " },
+          { "series", "series.vot", "<?xml" } };
+  for (guint k = 0; k < G_N_ELEMENTS (files); k++)
+    {
+      Watch watch;
+      g_autofree char *path = test_desk_path (files[k][1]), *bytes = NULL;
+      double taken = save (&bench, &watch, files[k][0], path);
+      g_test_message ("%s: %.2f s, the main loop's longest turn %.3f s", files[k][1], taken,
+                      (double)watch.longest / 1e6);
+      g_assert_true (g_file_get_contents (path, &bytes, NULL, NULL));
+      g_assert_true (g_str_has_prefix (bytes, files[k][2]));
+      g_assert_true (g_str_has_prefix (watch.said, "Saved: "));
+      /* Made in the main thread it would be one turn; the machine may be busy with other things. */
+      g_assert_cmpfloat ((double)watch.longest / 1e6, <, fmax (taken / 4, 0.25));
+      g_free (watch.said);
+    }
+  g_autofree char *table = NULL, *csv = test_desk_path ("series.csv");
+  g_assert_true (g_file_get_contents (csv, &table, NULL, NULL));
+  g_assert_nonnull (strstr (table, "emergence rate")); /* what was derived stands before the rows */
+  bench_clear (&bench);
+}
+
+static gboolean
+stop_at_once (gpointer session)
+{
+  tf_save_as_stop (session);
+  return G_SOURCE_REMOVE;
+}
+
+static guint
+count_files (const char *folder)
+{
+  guint n = 0;
+  g_autoptr (GDir) dir = g_dir_open (folder, 0, NULL);
+  while (dir != NULL && g_dir_read_name (dir) != NULL)
+    n++;
+  return n;
+}
+
+static void
+film_is_numbered_encoded_or_refused (void)
+{
+  Bench bench = bench_new ("follow-film.ledger");
+  Watch watch;
+  test_desk_wait ("every frame in", is_settled, &bench);
+  test_desk_wait ("all pictures", has_pictures, &bench);
+  guint n = g_list_model_get_n_items (tf_followed_get_looks (bench.followed));
+  g_autofree char *folder = test_desk_path ("film"), *first = g_strconcat (folder, "/0001.png", NULL),
+                  *gif = test_desk_path ("film.gif"), *webm = test_desk_path ("film.webm"),
+                  *stopped = test_desk_path ("stopped");
+  save (&bench, &watch, "film", folder);
+  g_free (watch.said);
+  g_assert_cmpuint (count_files (folder), ==, n);
+  g_assert_true (g_file_test (first, G_FILE_TEST_EXISTS));
+  static const char *const heads[] = { "GIF8", "\032\105\337\243" }; /* EBML */
+  for (guint k = 0; k < 2; k++)
+    {
+      const char *path = k == 0 ? gif : webm;
+      g_autofree char *bytes = NULL;
+      gboolean can = tf_follow_film_has_encoder (k == 0 ? ".gif" : ".webm");
+      save (&bench, &watch, "film", path);
+      g_test_message ("%s", watch.said);
+      g_assert_true (g_file_get_contents (path, &bytes, NULL, NULL) == can);
+      if (can)
+        g_assert_true (g_str_has_prefix (bytes, heads[k]));
+      else
+        g_assert_nonnull (strstr (watch.said, "No encoder is installed"));
+      g_free (watch.said);
+    }
+  g_idle_add_full (G_PRIORITY_HIGH, stop_at_once, bench.session, NULL);
+  save (&bench, &watch, "film", stopped);
+  g_assert_nonnull (strstr (watch.said, "cancelled"));
+  g_assert_false (g_file_test (stopped, G_FILE_TEST_EXISTS)); /* nothing half made */
+  g_free (watch.said);
+  bench_clear (&bench);
+}
+
 void
 test_desk_add_follow (void)
 {
+  g_test_add_func ("/desk/follow/saving-leaves-the-window-live", saving_leaves_the_window_live);
+  g_test_add_func ("/desk/follow/a-film-is-numbered-encoded-or-refused",
+                   film_is_numbered_encoded_or_refused);
   g_test_add_func ("/desk/follow/a-passage-is-read-with-one-floor-and-co-rotates", passage_is_there);
   g_test_add_func ("/desk/follow/looks-fill-in-and-step-within-the-stretch", looks_fill_in_and_step);
   g_test_add_func ("/desk/follow/a-cut-is-a-deed-that-undo-takes-back", cut_and_undo);

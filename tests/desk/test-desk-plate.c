@@ -13,6 +13,7 @@
 #include "tf-plate-shot.h"
 #include "tf-preferences-dialog.h"
 #include "tf-preferences.h"
+#include "tf-save-as.h"
 
 static gboolean
 is_open (gpointer session)
@@ -185,23 +186,17 @@ position_as_text (void)
   tf_session_close (session);
 }
 
-typedef struct
+static gboolean
+is_saved (gpointer session)
 {
-  gboolean done, good;
-} Saved;
-
-static void
-saved (GObject *source, GAsyncResult *result, gpointer data)
-{
-  Saved *s = data;
-  s->good = tf_plate_shot_save_finish (result, NULL);
-  s->done = TRUE;
+  return !tf_save_as_is_busy (session);
 }
 
-static gboolean
-is_done (gpointer data)
+static void
+keep_said (TfSession *session, const char *text, char **said)
 {
-  return ((Saved *)data)->done;
+  g_free (*said);
+  *said = g_strdup (text);
 }
 
 static void
@@ -217,18 +212,17 @@ picture_as_file (void)
     {
       g_autofree char *name = g_strconcat ("shot.", forms[k].ending, NULL),
                       *path = test_desk_path (name), *bytes = NULL;
-      Saved s = { 0 };
       tf_session_set_look (session, (TfLook)k);
-      tf_plate_shot_save (session, path, saved, &s);
-      test_desk_wait ("the picture", is_done, &s);
-      g_assert_true (s.good);
+      tf_plate_shot_save (session, path);
+      test_desk_wait ("the picture", is_saved, session);
       g_assert_true (g_file_get_contents (path, &bytes, NULL, NULL));
       g_assert_true (g_str_has_prefix (bytes, forms[k].head));
     }
-  Saved s = { 0 };
-  tf_plate_shot_save (session, "/no/such/folder/shot.png", saved, &s);
-  test_desk_wait ("the refusal", is_done, &s);
-  g_assert_false (s.good);
+  g_autofree char *said = NULL;
+  g_signal_connect (session, "message", G_CALLBACK (keep_said), &said);
+  tf_plate_shot_save (session, "/no/such/folder/shot.png");
+  test_desk_wait ("the refusal", is_saved, session);
+  g_assert_nonnull (strstr (said, "/no/such/folder/shot.png"));
   tf_session_close (session);
 }
 
