@@ -49,36 +49,44 @@ put_number (GString *out, const TfColumn *column, double value)
 }
 
 static void
-put_row (GString *out, const TfExportRow *row)
+put_row (GString *out, const TfTableOut *table, guint row)
 {
-  for (const TfColumn *column = tf_columns; column->name != NULL; column++)
+  for (guint k = 0; k < table->columns->len; k++)
     {
-      if (column != tf_columns)
+      const TfColumn *column = tf_table_out_column (table, k);
+      if (k > 0)
         g_string_append_c (out, ',');
       if (column->type != TF_COLUMN_TEXT)
         {
-          put_number (out, column, tf_column_number (column, row));
+          put_number (out, column, tf_table_out_number (table, column, row));
           continue;
         }
-      g_autofree char *text = tf_column_dup_text (column, row);
+      g_autofree char *text = tf_table_out_dup_text (table, column, row);
       put_text (out, text);
     }
   g_string_append (out, "\r\n");
 }
 
-gboolean
-tf_export_csv (const char *path, const GArray *rows, const GArray *facts, GError **error)
+char *
+tf_export_dup_csv (const TfTableOut *table)
 {
-  g_autoptr (GString) out = g_string_new (NULL);
-  for (guint k = 0; k < facts->len; k++)
+  GString *out = g_string_new (NULL);
+  for (guint k = 0; k < table->facts->len; k++)
     {
-      const TfFact *fact = &g_array_index (facts, TfFact, k);
+      const TfFact *fact = &g_array_index (table->facts, TfFact, k);
       g_string_append_printf (out, "# %s: %s\r\n", fact->key, fact->text);
     }
-  for (const TfColumn *column = tf_columns; column->name != NULL; column++)
-    g_string_append_printf (out, "%s%s", column == tf_columns ? "" : ",", column->name);
+  for (guint k = 0; k < table->columns->len; k++)
+    g_string_append_printf (out, "%s%s", k == 0 ? "" : ",", tf_table_out_column (table, k)->name);
   g_string_append (out, "\r\n");
-  for (guint k = 0; k < rows->len; k++)
-    put_row (out, &g_array_index (rows, TfExportRow, k));
-  return tf_export_save (path, out->str, (gssize)out->len, error);
+  for (guint k = 0; k < table->rows->len; k++)
+    put_row (out, table, k);
+  return g_string_free (out, FALSE);
+}
+
+gboolean
+tf_export_csv (const char *path, const TfTableOut *table, GError **error)
+{
+  g_autofree char *text = tf_export_dup_csv (table);
+  return tf_export_save (path, text, -1, error);
 }

@@ -18,22 +18,42 @@ GArray *tf_facts_new (const GArray *rows, const TfStudy *study, const char *sour
 
 /** tf_facts_add: one line more; takes @text. */
 void tf_facts_add (GArray *facts, const char *key, char *text);
-/** tf_export_write_facts: in the format that the ending of @path says. */
-gboolean
-tf_export_write_facts (const char *path, const GArray *rows, const GArray *facts, GError **error);
+
+/** TfTableOut: a table to be written: the flat columns first where its rows begin with a TfExportRow
+ * (a mark, or the mark that stands for a passage or a region), then those of its own kind. */
+typedef struct
+{
+  const char *name;     /* "marks", static; in capitals the name of the FITS table */
+  GPtrArray *columns;   /* const TfColumn * */
+  const GArray *rows;   /* structs of one kind, which the columns' getters take */
+  const GArray *facts;  /* TfFact */
+} TfTableOut;
+/** tf_table_out_init: @flat: rows begin with a TfExportRow; @more: (nullable): ended by name NULL. */
+void tf_table_out_init (TfTableOut *table, const char *name, gboolean flat, const TfColumn *more,
+                        const GArray *rows, const GArray *facts);
+void tf_table_out_clear (TfTableOut *table);
+G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfTableOut, tf_table_out_clear)
+const TfColumn *tf_table_out_column (const TfTableOut *table, guint k);
+/** tf_table_out_number, tf_table_out_dup_text: as tf_column_number() and tf_column_dup_text(). */
+double tf_table_out_number (const TfTableOut *table, const TfColumn *column, guint row);
+char *tf_table_out_dup_text (const TfTableOut *table, const TfColumn *column, guint row);
+
+/** tf_export_write_table: in the format that the ending of @path says. */
+gboolean tf_export_write_table (const char *path, const TfTableOut *table, GError **error);
 
 /** TfFormat: one way to write a table. */
 typedef struct
 {
   const char *ending; /* ".csv" */
-  gboolean (*write) (const char *path, const GArray *rows, const GArray *facts, GError **error);
+  gboolean (*write) (const char *path, const TfTableOut *table, GError **error);
 } TfFormat;
 
-gboolean tf_export_csv (const char *path, const GArray *rows, const GArray *facts, GError **error);
-gboolean
-tf_export_votable (const char *path, const GArray *rows, const GArray *facts, GError **error);
-gboolean tf_export_fits (const char *path, const GArray *rows, const GArray *facts, GError **error);
-gboolean tf_export_json (const char *path, const GArray *rows, const GArray *facts, GError **error);
+gboolean tf_export_csv (const char *path, const TfTableOut *table, GError **error);
+gboolean tf_export_votable (const char *path, const TfTableOut *table, GError **error);
+gboolean tf_export_fits (const char *path, const TfTableOut *table, GError **error);
+gboolean tf_export_json (const char *path, const TfTableOut *table, GError **error);
+/** tf_export_dup_csv: the whole file. */
+char *tf_export_dup_csv (const TfTableOut *table);
 
 /** tf_export_save: @text into @path, whole or not at all. */
 gboolean tf_export_save (const char *path, const char *text, gssize length, GError **error);

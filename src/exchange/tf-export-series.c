@@ -113,5 +113,7 @@ tf_export_series (const char *path, const GPtrArray *series, const TfStudy *stud
   g_autoptr (GArray) facts = tf_facts_new (rows, study, source);
   for (guint k = 0; k < series->len; k++)
     add_derived (facts, g_ptr_array_index (series, k));
-  return tf_export_write_facts (path, rows, facts, error);
+  g_auto (TfTableOut) table = { 0 };
+  tf_table_out_init (&table, "marks", TRUE, NULL, rows, facts);
+  return tf_export_write_table (path, &table, error);
 }

@@ -28,7 +28,8 @@ static void
 put_field (xmlTextWriter *writer, const TfColumn *column)
 {
   static const char *const types[] = { "unicodeChar", "double", "int", "boolean" };
-  gboolean timestamp = strcmp (column->name, "time") == 0; /* which must be char */
+  /* which must be char */
+  gboolean timestamp = strcmp (column->name, "time") == 0 || g_str_has_suffix (column->name, "_time");
   xmlTextWriterStartElement (writer, WORD ("FIELD"));
   put_attribute (writer, "name", column->name);
   put_attribute (writer, "ID", column->name);
@@ -48,11 +49,11 @@ put_field (xmlTextWriter *writer, const TfColumn *column)
 }
 
 static char *
-dup_cell (const TfColumn *column, const TfExportRow *row)
+dup_cell (const TfTableOut *table, const TfColumn *column, guint row)
 {
   if (column->type == TF_COLUMN_TEXT)
-    return tf_column_dup_text (column, row);
-  double value = tf_column_number (column, row);
+    return tf_table_out_dup_text (table, column, row);
+  double value = tf_table_out_number (table, column, row);
   if (isnan (value))
     return g_strdup (column->type == TF_COLUMN_INT ? NULL_INT : "");
   if (column->type == TF_COLUMN_BOOL)
@@ -72,12 +73,12 @@ make_holdable (char *text)
 }
 
 static void
-put_row (xmlTextWriter *writer, const TfExportRow *row)
+put_row (xmlTextWriter *writer, const TfTableOut *table, guint row)
 {
   xmlTextWriterStartElement (writer, WORD ("TR"));
-  for (const TfColumn *column = tf_columns; column->name != NULL; column++)
+  for (guint k = 0; k < table->columns->len; k++)
     {
-      g_autofree char *cell = dup_cell (column, row);
+      g_autofree char *cell = dup_cell (table, tf_table_out_column (table, k), row);
       make_holdable (cell);
       xmlTextWriterWriteElement (writer, WORD ("TD"), WORD (cell));
     }
@@ -100,25 +101,25 @@ put_facts (xmlTextWriter *writer, const GArray *facts)
 }
 
 static void
-put_table (xmlTextWriter *writer, const GArray *rows)
+put_table (xmlTextWriter *writer, const TfTableOut *table)
 {
-  g_autofree char *n = g_strdup_printf ("%u", rows->len);
+  g_autofree char *n = g_strdup_printf ("%u", table->rows->len);
   xmlTextWriterStartElement (writer, WORD ("TABLE"));
-  put_attribute (writer, "name", "marks");
+  put_attribute (writer, "name", table->name);
   put_attribute (writer, "nrows", n);
-  for (const TfColumn *column = tf_columns; column->name != NULL; column++)
-    put_field (writer, column);
+  for (guint k = 0; k < table->columns->len; k++)
+    put_field (writer, tf_table_out_column (table, k));
   xmlTextWriterStartElement (writer, WORD ("DATA"));
   xmlTextWriterStartElement (writer, WORD ("TABLEDATA"));
-  for (guint k = 0; k < rows->len; k++)
-    put_row (writer, &g_array_index (rows, TfExportRow, k));
+  for (guint k = 0; k < table->rows->len; k++)
+    put_row (writer, table, k);
   xmlTextWriterEndElement (writer);
   xmlTextWriterEndElement (writer);
   xmlTextWriterEndElement (writer);
 }
 
 static void
-put_document (xmlTextWriter *writer, const GArray *rows, const GArray *facts)
+put_document (xmlTextWriter *writer, const TfTableOut *table)
 {
   xmlTextWriterSetIndent (writer, 1);
   xmlTextWriterStartDocument (writer, NULL, "UTF-8", NULL);
@@ -128,22 +129,22 @@ put_document (xmlTextWriter *writer, const GArray *rows, const GArray *facts)
                  "http://www.ivoa.net/xml/VOTable/v1.3"); /* the name space of 1.4 too */
   xmlTextWriterStartElement (writer, WORD ("RESOURCE"));
   put_attribute (writer, "type", "results");
-  put_facts (writer, facts);
-  put_table (writer, rows);
+  put_facts (writer, table->facts);
+  put_table (writer, table);
   xmlTextWriterEndElement (writer);
   xmlTextWriterEndElement (writer);
   xmlTextWriterEndDocument (writer);
 }
 
 gboolean
-tf_export_votable (const char *path, const GArray *rows, const GArray *facts, GError **error)
+tf_export_votable (const char *path, const TfTableOut *table, GError **error)
 {
   xmlBuffer *buffer = xmlBufferCreate ();
   xmlTextWriter *writer = buffer != NULL ? xmlNewTextWriterMemory (buffer, 0) : NULL;
   gboolean good = writer != NULL;
   if (good)
     {
-      put_document (writer, rows, facts);
+      put_document (writer, table);
       xmlFreeTextWriter (writer);
       good = tf_export_save (path, (const char *)xmlBufferContent (buffer),
                              xmlBufferLength (buffer), error);

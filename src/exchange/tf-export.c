@@ -57,14 +57,65 @@ tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPt
   return judged;
 }
 
+/* -- a table to be written ---------------------------------------------------------------------- */
+
+void
+tf_table_out_init (TfTableOut *table, const char *name, gboolean flat, const TfColumn *more,
+                   const GArray *rows, const GArray *facts)
+{
+  *table = (TfTableOut){ name, g_ptr_array_new (), rows, facts };
+  for (const TfColumn *column = tf_columns; flat && column->name != NULL; column++)
+    g_ptr_array_add (table->columns, (gpointer)column);
+  for (const TfColumn *column = more; column != NULL && column->name != NULL; column++)
+    g_ptr_array_add (table->columns, (gpointer)column);
+}
+
+void
+tf_table_out_clear (TfTableOut *table)
+{
+  g_clear_pointer (&table->columns, g_ptr_array_unref);
+}
+
+const TfColumn *
+tf_table_out_column (const TfTableOut *table, guint k)
+{
+  return g_ptr_array_index (table->columns, k);
+}
+
+static gconstpointer
+row_at (const TfTableOut *table, guint row)
+{
+  return table->rows->data + (gsize)row * g_array_get_element_size ((GArray *)table->rows);
+}
+
+static gboolean
+is_flat (const TfColumn *column)
+{
+  return tf_column_find (column->name) == column;
+}
+
+double
+tf_table_out_number (const TfTableOut *table, const TfColumn *column, guint row)
+{
+  gconstpointer data = row_at (table, row);
+  return is_flat (column) ? tf_column_number (column, data) : column->number (data) * column->factor;
+}
+
+char *
+tf_table_out_dup_text (const TfTableOut *table, const TfColumn *column, guint row)
+{
+  gconstpointer data = row_at (table, row);
+  return is_flat (column) ? tf_column_dup_text (column, data) : column->text (data);
+}
+
 gboolean
-tf_export_write_facts (const char *path, const GArray *rows, const GArray *facts, GError **error)
+tf_export_write_table (const char *path, const TfTableOut *table, GError **error)
 {
   for (guint k = 0; k < G_N_ELEMENTS (formats); k++)
     {
       gsize n = strlen (path), m = strlen (formats[k].ending);
       if (n > m && g_ascii_strcasecmp (path + n - m, formats[k].ending) == 0)
-        return formats[k].write (path, rows, facts, error);
+        return formats[k].write (path, table, error);
     }
   g_set_error (error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_FORMAT,
                _ ("%s: the ending of the name says how a table is written, and this one is none of "
@@ -78,5 +129,7 @@ tf_export_write (const char *path, const GArray *rows, const TfStudy *study, con
                  GError **error)
 {
   g_autoptr (GArray) facts = tf_facts_new (rows, study, source);
-  return tf_export_write_facts (path, rows, facts, error);
+  g_auto (TfTableOut) table = { 0 };
+  tf_table_out_init (&table, "marks", TRUE, NULL, rows, facts);
+  return tf_export_write_table (path, &table, error);
 }

@@ -112,23 +112,29 @@ write_pixels (fitsfile *file, const float *pixels, guint width, guint height,
     }
 }
 
-/* CHECKSUM and DATASUM without the time in their comments that CFITSIO would add: equal input,
- * equal bytes. */
-static void
-write_sums (fitsfile *file, int *status)
+int
+tf_fits_write_sums (const char *path, int hdu)
 {
+  g_return_val_if_fail (path != NULL && hdu > 0, FILE_NOT_OPENED);
+  fitsfile *file = NULL;
   unsigned long data = 0, whole = 0;
   char text[24];
-  fits_update_key_str (file, "CHECKSUM", "0000000000000000", "HDU checksum", status);
-  fits_update_key_str (file, "DATASUM", "0", "data unit checksum", status);
-  fits_flush_file (file, status);
-  fits_get_chksum (file, &data, &whole, status);
+  int status = 0, closing = 0;
+  if (fits_open_diskfile (&file, path, READWRITE, &status) != 0)
+    return status;
+  fits_movabs_hdu (file, hdu, NULL, &status);
+  fits_update_key_str (file, "CHECKSUM", "0000000000000000", "HDU checksum", &status);
+  fits_update_key_str (file, "DATASUM", "0", "data unit checksum", &status);
+  fits_flush_file (file, &status);
+  fits_get_chksum (file, &data, &whole, &status);
   g_snprintf (text, sizeof text, "%lu", data);
-  fits_modify_key_str (file, "DATASUM", text, "&", status);
-  fits_flush_file (file, status);
-  fits_get_chksum (file, &data, &whole, status);
+  fits_modify_key_str (file, "DATASUM", text, "&", &status);
+  fits_flush_file (file, &status);
+  fits_get_chksum (file, &data, &whole, &status);
   fits_encode_chksum (whole, TRUE, text);
-  fits_modify_key_str (file, "CHECKSUM", text, "&", status);
+  fits_modify_key_str (file, "CHECKSUM", text, "&", &status);
+  fits_close_file (file, &closing);
+  return status != 0 ? status : closing;
 }
 
 static int
@@ -153,9 +159,10 @@ write_file (const char *path, const TfHeader *header, const float *pixels, guint
   if (!how->no_date)
     fits_write_date (file, &status);
   write_pixels (file, pixels, width, height, how, &status);
-  write_sums (file, &status);
   fits_close_file (file, &closing);
-  return status != 0 ? status : closing;
+  if (status == 0)
+    status = closing != 0 ? closing : tf_fits_write_sums (path, how->compress ? 2 : 1);
+  return status;
 }
 
 static gboolean

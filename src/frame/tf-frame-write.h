@@ -27,4 +27,9 @@ typedef struct
 gboolean tf_frame_write (const char *path, const TfHeader *header, const float *pixels, guint width,
                          guint height, const TfFrameWrite *how, GError **error);
 
+/** tf_fits_write_sums: CHECKSUM and DATASUM of HDU @hdu (1 = primary) of the FITS file @path, without
+ * the times in their comments that CFITSIO would add: equal input, equal bytes. Returns: CFITSIO's
+ * status, 0 when done. */
+int tf_fits_write_sums (const char *path, int hdu);
+
 G_END_DECLS

@@ -52,12 +52,15 @@ pole_lon (const TfExportRow *r, gboolean leading)
   return pole != NULL ? pole->carrington_lon_deg : NAN;
 }
 
-#define TEXT(name, expression)                                                                     \
-  static char *name (const TfExportRow *r) { return text_or_empty (expression); }
-#define TAKE(name, expression)                                                                     \
-  static char *name (const TfExportRow *r) { return expression; }
-#define NUMBER(name, expression)                                                                   \
-  static double name (const TfExportRow *r) { return expression; }
+#define GETTER(type, name, expression)                                                             \
+  static type name (gconstpointer row)                                                             \
+  {                                                                                                \
+    const TfExportRow *r = row;                                                                    \
+    return expression;                                                                             \
+  }
+#define TEXT(name, expression)   GETTER (char *, name, text_or_empty (expression))
+#define TAKE(name, expression)   GETTER (char *, name, expression)
+#define NUMBER(name, expression) GETTER (double, name, expression)
 #define M (r->row->measure)
 
 /* clang-format off */
@@ -122,7 +125,6 @@ NUMBER (get_simulated, r->row->simulated != 0)
 TEXT (get_source, O != NULL ? O->source : NULL)
 TEXT (get_licence, O != NULL ? O->licence : NULL)
 NUMBER (get_source_row, O != NULL ? O->place : (double)NAN)
-TEXT (get_nothing, NULL)
 #define C (r->row->complexity)
 NUMBER (get_schrijver, C.there ? C.r_mx : (double)NAN)
 NUMBER (get_gradient_length, C.there ? C.strong_gradient_length_mm : (double)NAN)
@@ -133,6 +135,12 @@ NUMBER (get_delta_candidate, int_or_nan (C.there, C.delta_candidate != 0))
 NUMBER (get_complexity_mu, r->row->complexity_method != NULL ? C.mu : (double)NAN)
 TEXT (get_complexity_method, r->row->complexity_method)
 TEXT (get_external, r->row->external)
+
+static char *
+get_nothing (gconstpointer row)
+{
+  return g_strdup ("");
+}
 
 /* -- the table -------------------------------------------------------------------------------- */
 

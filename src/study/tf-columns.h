@@ -33,8 +33,9 @@ typedef struct
   TfColumnType type;
   const char *fits_unit, *vo_unit, *ucd, *description; /* units "" where none */
   double factor;                                       /* value in the unit = number * factor; 1 */
-  double (*number) (const TfExportRow *row);           /* NUMBER, INT, BOOL: NaN missing */
-  char *(*text) (const TfExportRow *row);              /* TEXT: (transfer full) "" missing */
+  /* of a row as the table's kind has it, for tf_columns a TfExportRow */
+  double (*number) (gconstpointer row); /* NUMBER, INT, BOOL: NaN missing */
+  char *(*text) (gconstpointer row);    /* TEXT: (transfer full) "" missing */
 } TfColumn;
 extern const TfColumn tf_columns[]; /* ends with name NULL; order and names as 6-commands */
 
