@@ -12,6 +12,7 @@
 #include <json-glib/json-glib.h>
 
 #include "tf-bands.h"
+#include "tf-bundle.h"
 #include "tf-companion.h"
 #include "tf-complexity.h"
 #include "tf-frame.h"
@@ -72,14 +73,17 @@ int tf_batch_usage (const char *verb, const char *what);
 /** TfLawsWords: which study laws runs, and what is kept of it. */
 typedef struct
 {
-  char *study, *name, *person, *save_study, *keep_edition, *against, *figures;
+  char *study, *name, *person, *save_study, *keep_edition, *against, *figures, *bundle;
   gboolean keep_study;
 } TfLawsWords;
 void tf_laws_words_clear (TfLawsWords *words);
 G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfLawsWords, tf_laws_words_clear)
 void tf_batch_laws_add_words (GOptionContext *context, TfLawsWords *words);
-/** tf_batch_laws_study: the study that --study names among the words, else the default one. */
-TfStudy *tf_batch_laws_study (int argc, char **argv, gboolean *from_file, GError **error);
+/** tf_batch_laws_study: the study that --study names among the words, else that of a bundle, else the default one. @bundle: (out)
+ * (transfer full) (nullable): when the words name one in a ledger's place. */
+TfStudy *tf_batch_laws_study (int argc, char **argv, gboolean *from_file, TfBundle **bundle, GError **error);
+/** tf_batch_laws_bundle: runs @study on a bundle's rows and says whether the numbers are the bundle's own. */
+int tf_batch_laws_bundle (const char *path, const TfBundle *bundle, TfStudy *study, gboolean json, const TfLawsWords *words);
 /** tf_batch_laws_keep: saves and keeps what was asked for; compares with an edition. */
 int tf_batch_laws_keep (TfLedger *ledger, TfStudy *study, const TfFindings *findings, gboolean json,
                         const TfLawsWords *words);
@@ -122,9 +126,6 @@ void tf_table_add (TfTable *table, const char *format, ...) G_GNUC_PRINTF (2, 3)
 /** tf_table_dup_text: lines indented by two, each ended. */
 char *tf_table_dup_text (const TfTable *table);
 
-/** tf_batch_write_figures: the charts that have something to show, as FOLDER/NAME.pdf. */
-gboolean
-tf_batch_write_figures (const TfFindings *findings, const TfStudy *study, const char *folder, GError **error);
 /** tf_batch_print_findings: a study's findings for a person. */
 void tf_batch_print_findings (const TfFindings *findings, const TfStudy *study);
 /** tf_batch_export_series: one region through its passages into the table @out; returns the exit code. */

@@ -9,6 +9,7 @@
 #include "tf-export.h"
 #include "tf-json.h"
 #include "tf-ledger-studies.h"
+#include "tf-study-again.h"
 #include "tf-study-compare.h"
 
 /* laws: the study it runs (from a file or the ledger), keeping it, editions and what differs. */
@@ -23,6 +24,7 @@ tf_laws_words_clear (TfLawsWords *words)
   g_free (words->keep_edition);
   g_free (words->against);
   g_free (words->figures);
+  g_free (words->bundle);
 }
 
 void
@@ -35,6 +37,7 @@ tf_batch_laws_add_words (GOptionContext *context, TfLawsWords *words)
     { "keep-study", 0, 0, G_OPTION_ARG_NONE, &words->keep_study, N_ ("keep the study in the ledger under its name, as a new version"), NULL },
     { "keep-edition", 0, 0, G_OPTION_ARG_STRING, &words->keep_edition, N_ ("keep the study's state with its numbers under this name, for good"), "NAME" },
     { "against", 0, 0, G_OPTION_ARG_STRING, &words->against, N_ ("list what differs from an edition, and why"), "EDITION" },
+    { "bundle", 0, 0, G_OPTION_ARG_FILENAME, &words->bundle, N_ ("write a study bundle: the study, its rows, numbers and charts in one zip"), "FILE" },
     { "person", 0, 0, G_OPTION_ARG_STRING, &words->person, N_ ("who keeps it"), "NAME" },
     { NULL },
   };
@@ -98,13 +101,26 @@ open_ledger (int argc, char **argv, const char *word, GError **error)
   return NULL;
 }
 
-TfStudy *
-tf_batch_laws_study (int argc, char **argv, gboolean *from_file, GError **error)
+/* The first word that is a zip and no value of an option. */
+static const char *
+find_bundle (int argc, char **argv)
 {
-  const char *word = find_word (argc, argv);
+  static const char *const valued[] = { "--bundle", "--figures", "--save-study", "--study", NULL };
+  for (int k = 1; k < argc; k++)
+    if (*argv[k] != '-' && !g_strv_contains (valued, argv[k - 1]) && tf_bundle_is (argv[k]))
+      return argv[k];
+  return NULL;
+}
+
+TfStudy *
+tf_batch_laws_study (int argc, char **argv, gboolean *from_file, TfBundle **bundle, GError **error)
+{
+  const char *word = find_word (argc, argv), *zip = find_bundle (argc, argv);
   *from_file = word != NULL && g_file_test (word, G_FILE_TEST_IS_REGULAR);
+  if (zip != NULL && (*bundle = tf_bundle_read (zip, error)) == NULL)
+    return NULL;
   if (word == NULL)
-    return tf_study_new_default ();
+    return zip != NULL ? tf_study_copy ((*bundle)->study) : tf_study_new_default ();
   if (*from_file)
     {
       g_autofree char *text = NULL;
@@ -207,6 +223,20 @@ save (const TfStudy *study, const char *path, GError **error)
   return g_file_set_contents (path, text, -1, error);
 }
 
+static gboolean
+write_bundle (TfLedger *ledger, const TfStudy *study, const TfFindings *findings, const char *path,
+              GError **error)
+{
+  g_autoptr (TfStudySource) source = tf_study_source_read (study, ledger, error);
+  if (source == NULL || !tf_bundle_write (path, study, findings, source, error))
+    return FALSE;
+  g_autofree char *line = g_strdup_printf (
+      _ ("%s: the study “%s” with %u rows, %u of them picks, its numbers and its charts; tiltfield-run laws %s works them out again"),
+      path, study->name, source->rows->len, tf_sample_get_n (findings->sample), path);
+  tf_batch_say (line);
+  return TRUE;
+}
+
 int
 tf_batch_laws_keep (TfLedger *ledger, TfStudy *study, const TfFindings *findings, gboolean json,
                     const TfLawsWords *words)
@@ -217,6 +247,8 @@ tf_batch_laws_keep (TfLedger *ledger, TfStudy *study, const TfFindings *findings
     good = keep_edition (ledger, study, findings, words, &error);
   else if (good && words->keep_study)
     good = keep_study (ledger, study, words, &error);
+  if (good && words->bundle != NULL)
+    good = write_bundle (ledger, study, findings, words->bundle, &error);
   if (good && words->against != NULL)
     good = compare (ledger, study, findings, words->against, json, &error);
   if (good)

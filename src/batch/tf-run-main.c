@@ -29,7 +29,7 @@ const TfVerb tf_verbs[] = {
     "tiltfield-run pair demo.ledger --within 6", tf_verb_pair },
   { "bring", "LEDGER TABLE", N_ ("Brings a table of regions in as outside regions: CSV, VOTable, FITS or JSON."),
     "tiltfield-run bring old.ledger groups.csv --columns groups.map --source \"Spot groups 1917-1985\"", tf_verb_bring },
-  { "laws", "LEDGER", N_ ("Tests Hale's polarity law and Joy's tilt law on a ledger."),
+  { "laws", "LEDGER|BUNDLE", N_ ("Tests Hale's polarity law and Joy's tilt law on a ledger, or works a study bundle out again and says whether its numbers are the same."),
     "tiltfield-run laws demo.ledger --with-hints", tf_verb_laws },
   { "export", "LEDGER OUT", N_ ("Writes the catalogue; OUT ends in .csv, .vot, .fits or .json."),
     "tiltfield-run export demo.ledger regions.vot", tf_verb_export },

@@ -4,9 +4,10 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-batch.h"
+#include "tf-findings-figures.h"
 #include "tf-intake.h"
 
-/* laws: Hale's and Joy's law on a ledger, under the default study. */
+/* laws: Hale's and Joy's law on a ledger or on a study bundle. */
 
 /* The measures that the what-ifs about the floor ask for. */
 static gboolean
@@ -67,7 +68,9 @@ laws (const char *path, TfStudy *study, gboolean from_file, gboolean floors, gbo
   if (findings == NULL)
     return fail (error);
   study->even_floor_gauss = findings->even_floor_gauss;
-  if (words->figures != NULL && !tf_batch_write_figures (findings, study, words->figures, &error))
+  g_autoptr (GPtrArray) figures
+      = words->figures != NULL ? tf_findings_write_figures (findings, study, words->figures, &error) : NULL;
+  if (words->figures != NULL && figures == NULL)
     return fail (error);
   if (words->against == NULL)
     print (findings, study, json);
@@ -80,7 +83,8 @@ tf_verb_laws (int argc, char **argv)
   gboolean json = FALSE, with_hints = FALSE, floors = FALSE, from_file = FALSE;
   g_auto (TfLawsWords) words = { 0 };
   g_autoptr (GError) error = NULL;
-  g_autoptr (TfStudy) study = tf_batch_laws_study (argc, argv, &from_file, &error);
+  g_autoptr (TfBundle) bundle = NULL;
+  g_autoptr (TfStudy) study = tf_batch_laws_study (argc, argv, &from_file, &bundle, &error);
   if (study == NULL)
     return fail (error);
   const GOptionEntry entries[] = {
@@ -98,7 +102,7 @@ tf_verb_laws (int argc, char **argv)
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
   if (argc != 2)
-    return tf_batch_usage ("laws", _ ("Name one ledger."));
+    return tf_batch_usage ("laws", _ ("Name one ledger, or one study bundle."));
   if ((words.keep_study || words.keep_edition != NULL) && words.person == NULL)
     return tf_batch_usage ("laws", _ ("Keeping a study or an edition is a person's deed: say whose with --person."));
   if (with_hints)
@@ -108,5 +112,9 @@ tf_verb_laws (int argc, char **argv)
       g_free (study->name);
       study->name = g_strdup (words.name);
     }
+  if (bundle != NULL && (floors || words.save_study != NULL || words.keep_study || words.keep_edition != NULL || words.against != NULL || words.bundle != NULL))
+    return tf_batch_usage ("laws", _ ("A study bundle has no ledger: nothing can be kept, measured or compared with an edition there."));
+  if (bundle != NULL)
+    return tf_batch_laws_bundle (argv[1], bundle, study, json, &words);
   return laws (argv[1], study, from_file, floors, json, &words);
 }

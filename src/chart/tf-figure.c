@@ -65,6 +65,8 @@ set_properties (cairo_surface_t *surface, const TfFigurePage *page)
     cairo_pdf_surface_set_metadata (surface, CAIRO_PDF_METADATA_TITLE, page->title);
   if (page->subject != NULL)
     cairo_pdf_surface_set_metadata (surface, CAIRO_PDF_METADATA_SUBJECT, page->subject);
+  /* no time of writing: equal charts are equal files */
+  cairo_pdf_surface_set_metadata (surface, CAIRO_PDF_METADATA_CREATE_DATE, "");
   cairo_pdf_surface_set_metadata (surface, CAIRO_PDF_METADATA_CREATOR, "Tiltfield " TF_VERSION);
 }
 

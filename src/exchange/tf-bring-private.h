@@ -22,5 +22,7 @@ gboolean tf_brought_column_init (TfBroughtColumn *column, const char *given);
 /* NULL, or (transfer full) why the value is bad. */
 char *tf_brought_column_take (const TfBroughtColumn *column, const char *cell, JsonObject *flat,
                               TfTime *time);
+/* NULL, or (transfer full) the range of that column which @value is out of. */
+char *tf_brought_check_range (const char *name, double value);
 /* Sign rules that need the latitude, and the fold of polarity_tilt_deg. */
 void tf_brought_fold_tilt (JsonObject *flat);

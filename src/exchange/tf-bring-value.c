@@ -40,8 +40,8 @@ tf_brought_column_init (TfBroughtColumn *column, const char *given)
   return isfinite (column->factor);
 }
 
-static char *
-check_range (const char *name, double value)
+char *
+tf_brought_check_range (const char *name, double value)
 {
   for (guint k = 0; k < G_N_ELEMENTS (ranges); k++)
     {
@@ -96,7 +96,7 @@ take_time (const TfBroughtColumn *column, const char *cell, JsonObject *flat, Tf
     {
       if (!tf_number_read (cell, &value))
         return g_strdup (_ ("not a number"));
-      char *wrong = check_range (name, value);
+      char *wrong = tf_brought_check_range (name, value);
       if (wrong != NULL)
         return wrong;
       *time = strcmp (name, "time_jd") == 0
@@ -149,7 +149,7 @@ take_number (const TfBroughtColumn *column, const char *cell, JsonObject *flat)
     value *= column->factor;
   if (rule->sign == TF_SIGN_OTHER)
     value = -value;
-  char *wrong = check_range (rule->name, value);
+  char *wrong = tf_brought_check_range (rule->name, value);
   if (wrong != NULL)
     return wrong;
   value = wrap (rule->name, value);

@@ -30,6 +30,14 @@ tf_facts_add (GArray *facts, const char *key, char *take)
   g_array_append_val (facts, fact);
 }
 
+/* A table's rows may be longer than a TfExportRow, which they begin with. */
+static const TfExportRow *
+row_at (const GArray *rows, guint k)
+{
+  return (const TfExportRow *)(gconstpointer)(rows->data
+                                              + (gsize)k * g_array_get_element_size ((GArray *)rows));
+}
+
 /* The different texts that @get gives over the rows, with how often, in order of appearance. */
 static char *
 list_values (const GArray *rows, char *(*get) (const TfExportRow *row))
@@ -39,7 +47,7 @@ list_values (const GArray *rows, char *(*get) (const TfExportRow *row))
   GString *text = g_string_new (NULL);
   for (guint k = 0; k < rows->len; k++)
     {
-      char *value = get (&g_array_index (rows, TfExportRow, k));
+      char *value = get (row_at (rows, k));
       guint n = GPOINTER_TO_UINT (g_hash_table_lookup (counts, value)) + 1;
       if (n == 1)
         g_ptr_array_add (order, g_strdup (value));
@@ -98,7 +106,7 @@ tf_facts_new (const GArray *rows, const TfStudy *study, const char *source)
   guint hints = 0;
   g_array_set_clear_func (facts, clear_fact);
   for (guint k = 0; k < rows->len; k++)
-    hints += g_array_index (rows, TfExportRow, k).row->is_hint != 0;
+    hints += row_at (rows, k)->row->is_hint != 0;
   tf_facts_add (facts, "program", g_strdup ("Tiltfield " TF_VERSION));
   tf_facts_add (facts, "method", list_values (rows, method_of));
   tf_facts_add (facts, "floor", list_values (rows, floor_of));

@@ -125,6 +125,7 @@ tf_study_build_file (const TfStudy *study, JsonBuilder *builder)
   put_options (builder, "cycle", tf_divide_options, &study->divide);
   put_options (builder, "verdict", tf_verdict_options, &study->verdict);
   tf_json_number (builder, "even_floor_gauss", study->even_floor_gauss);
+  tf_json_bool (builder, "instrument_scales", study->sieve.with_scales);
   tf_json_string (builder, "divides_moved_with_polarity_in_sight", study->divides_shown);
   json_builder_end_object (builder);
   json_builder_set_member_name (builder, "methods");
@@ -349,6 +350,7 @@ read_study (TfStudy *study, JsonObject *root, const char *name, GError **error)
   if (conventions != NULL)
     {
       study->even_floor_gauss = tf_json_member_number (conventions, "even_floor_gauss");
+      study->sieve.with_scales = tf_json_member_bool (conventions, "instrument_scales", FALSE);
       study->divides_shown
           = g_strdup (tf_json_member_string (conventions, "divides_moved_with_polarity_in_sight"));
     }

@@ -325,6 +325,7 @@ main (int argc, char **argv)
   g_test_add_func ("/exchange/mount-wilson/greek-and-names-are-taken-apart", test_mount_wilson);
   add_daily_summary_tests ();
   add_bring_tests ();
+  add_bundle_tests ();
   if (argc > 1)
     {
       add_row_tests (argv[1]);

@@ -7,3 +7,4 @@
 void add_row_tests (const char *demo_folder);
 
 void add_bring_tests (void);
+void add_bundle_tests (void);

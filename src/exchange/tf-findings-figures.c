@@ -1,14 +1,15 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-#include "tf-batch.h"
+#include "tf-findings-figures.h"
+
 #include "tf-figure.h"
 
-/* The charts of a study as files: PDF, a column wide. */
-
-gboolean
-tf_batch_write_figures (const TfFindings *findings, const TfStudy *study, const char *folder, GError **error)
+GPtrArray *
+tf_findings_write_figures (const TfFindings *findings, const TfStudy *study, const char *folder,
+                           GError **error)
 {
+  g_return_val_if_fail (findings != NULL && study != NULL && folder != NULL, NULL);
   g_autoptr (TfDivides) computed = tf_divides_new (&study->divide);
   const TfLawsFacts facts = { .sample = findings->sample,
                               .verdicts = findings->verdicts,
@@ -20,6 +21,5 @@ tf_batch_write_figures (const TfFindings *findings, const TfStudy *study, const 
                               .joy_params = study->joy };
   g_autoptr (TfLawsCharts) charts = tf_laws_charts_new (&facts);
   g_autofree char *words = tf_findings_dup_words (findings, study);
-  g_autoptr (GPtrArray) files = tf_laws_charts_write (charts, folder, "pdf", words, error);
-  return files != NULL;
+  return tf_laws_charts_write (charts, folder, "pdf", words, error);
 }
