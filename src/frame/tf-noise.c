@@ -14,8 +14,18 @@
 #define CLIP 2.0
 #define CORE 0.63911187
 
+/* Wide faint fields, such as the edges of plage, hide in the noise of one pixel but not in that of
+ * a mean: pixels about which the mean of the row is off the ring's median by more than OFF sigma
+ * do not count in a second turn. White noise gives such a mean 0.2 sigma; as much room is left
+ * because neighbouring pixels' noise may hang together. Common practice, no source. */
+#define OFF 0.9
+
+/* Rings nearer the limb than this have few pixels: all of those in the rows looked at count. */
+#define OUTER_MU 0.2
+
 enum
 {
+  BESIDE = 12,     /* pixels on either side that the mean is over */
   WANTED = 300000, /* pixels looked at for sigma */
   FEWEST = 60,     /* pixels that make a ring */
   TURNS = 60,
@@ -42,28 +52,36 @@ from_key (guint32 key)
   return value;
 }
 
-/* Radix sort, three passes of 11 bits. */
-static void
-sort_floats (float *values, gsize n)
+/* A pixel of the sample: its value's key, and the mean of the row about it, NaN where too little
+ * of it is there. */
+typedef struct
 {
-  g_autofree guint32 *keys = g_new (guint32, n), *other = g_new (guint32, n);
-  for (gsize k = 0; k < n; k++)
-    keys[k] = to_key (values[k]);
+  guint32 key;
+  float mean;
+} Pixel;
+
+/* By value. Radix sort, three passes of 11 bits. */
+static void
+sort_pixels (GArray *pixels)
+{
+  gsize n = pixels->len;
+  Pixel *own = (Pixel *)(void *)pixels->data, *from = own;
+  g_autofree Pixel *room = g_new (Pixel, MAX (n, 1));
+  Pixel *to = room;
   for (guint shift = 0; shift < 33; shift += 11)
     {
       gsize start[2049] = { 0 };
       for (gsize k = 0; k < n; k++)
-        start[((keys[k] >> shift) & 2047) + 1]++;
+        start[((from[k].key >> shift) & 2047) + 1]++;
       for (guint b = 0; b < 2048; b++)
         start[b + 1] += start[b];
       for (gsize k = 0; k < n; k++)
-        other[start[(keys[k] >> shift) & 2047]++] = keys[k];
-      guint32 *swap = keys;
-      keys = other;
-      other = swap;
+        to[start[(from[k].key >> shift) & 2047]++] = from[k];
+      Pixel *swap = from;
+      from = to;
+      to = swap;
     }
-  for (gsize k = 0; k < n; k++)
-    values[k] = from_key (keys[k]);
+  memcpy (own, from, n * sizeof *own);
 }
 
 /* First index whose value is >= @limit. */
@@ -166,7 +184,7 @@ core_sigma (const float *sorted, gsize n)
  * other: the same for any number of threads. */
 typedef struct
 {
-  GArray *values[TF_NOISE_RINGS]; /* of float */
+  GArray *pixels[TF_NOISE_RINGS]; /* of Pixel */
   double sum[TF_NOISE_RINGS];     /* of mu or |latitude| */
 } Rings;
 
@@ -181,33 +199,65 @@ typedef struct
 } Sample;
 
 static void
-rings_add (Rings *rings, double place, double share, float value)
+rings_add (Rings *rings, double place, double share, float value, float mean)
 {
   if (!isfinite (value) || !(share >= 0 && share <= 1))
     return;
   guint k = MIN ((guint)(share * TF_NOISE_RINGS), TF_NOISE_RINGS - 1);
-  g_array_append_val (rings->values[k], value);
+  g_array_append_val (rings->pixels[k], ((Pixel){ to_key (value), mean }));
   rings->sum[k] += place;
 }
 
-/* Row @row of the sample is every @step-th pixel of the frame's row @y, each row begun one further
+/* What is worked out along a row: mu, and sum and number of the values before each column. */
+typedef struct
+{
+  float *mu;
+  double *sum;
+  guint *n;
+} Row;
+
+static void
+row_fill (const Row *row, const float *line, guint width)
+{
+  for (guint x = 0; x < width; x++)
+    {
+      gboolean there = isfinite (line[x]);
+      row->sum[x + 1] = row->sum[x] + (there ? (double)line[x] : 0);
+      row->n[x + 1] = row->n[x] + (there ? 1 : 0);
+    }
+}
+
+static float
+mean_about (const Row *row, guint x, guint width)
+{
+  guint a = x > BESIDE ? x - BESIDE : 0, b = MIN (x + BESIDE + 1, width);
+  guint n = row->n[b] - row->n[a];
+  return n > BESIDE ? (float)((row->sum[b] - row->sum[a]) / n) : NAN;
+}
+
+/* Row @k of the sample is every @step-th pixel of the frame's row @y, each row begun one further
  * so that no column is favoured. */
 static void
-rings_add_row (Rings *rings, const Sample *sample, guint row, guint y, float *mu)
+rings_add_row (Rings *rings, const Sample *sample, guint k, guint y, const Row *row)
 {
   const TfGeometry *g = sample->g;
   gboolean map = tf_geometry_is_map (g), disk = g->projection == TF_PROJECTION_TAN;
   const float *line = sample->pixels + (gsize)y * g->width;
+  guint next = k % sample->step;
   TfPlace place = { 0 };
   if (map && !tf_geometry_pixel_to_sun (g, 0.5 * (g->width + 1), y + 1.0, &place))
     return;
   if (disk)
-    tf_geometry_row_mu (g, y + 1.0, 1, g->width, mu);
-  for (guint x = row % sample->step; x < g->width; x += sample->step)
-    if (map)
-      rings_add (rings, fabs (place.lat_deg), fabs (place.lat_deg) / 90, line[x]);
-    else
-      rings_add (rings, disk ? (double)mu[x] : 1, disk ? (double)mu[x] : 1, line[x]);
+    tf_geometry_row_mu (g, y + 1.0, 1, g->width, row->mu);
+  row_fill (row, line, g->width);
+  for (guint x = 0; x < g->width; x++)
+    {
+      if (x != next && !(disk && row->mu[x] < (float)OUTER_MU))
+        continue;
+      double at = map ? fabs (place.lat_deg) : disk ? (double)row->mu[x] : 1;
+      rings_add (rings, at, map ? at / 90 : at, line[x], mean_about (row, x, g->width));
+      next += x == next ? sample->step : 0;
+    }
 }
 
 /* A "band" of the pool is a part here. */
@@ -219,10 +269,30 @@ fill_part (guint band, guint first, guint n, guint worker, gpointer data)
   guint step = sample->step, height = sample->g->height;
   guint rows = height > step / 2 ? (height - step / 2 - 1) / step + 1 : 0;
   g_autofree float *mu = g_new (float, sample->g->width);
+  g_autofree double *sum = g_new0 (double, sample->g->width + 1);
+  g_autofree guint *count = g_new0 (guint, sample->g->width + 1);
   for (guint k = 0; k < TF_NOISE_RINGS; k++)
-    rings->values[k] = g_array_new (FALSE, FALSE, sizeof (float));
-  for (guint row = rows * band / PARTS; row < rows * (band + 1) / PARTS; row++)
-    rings_add_row (rings, sample, row, step / 2 + row * step, mu);
+    rings->pixels[k] = g_array_new (FALSE, FALSE, sizeof (Pixel));
+  for (guint k = rows * band / PARTS; k < rows * (band + 1) / PARTS; k++)
+    rings_add_row (rings, sample, k, step / 2 + k * step, &(Row){ mu, sum, count });
+}
+
+/* Sigma of those of @sorted about which the mean is off @centre by @most or less; NaN when they are fewer
+ * than @fewest. @values: room for all. */
+static double
+sigma_of (const GArray *sorted, double centre, double most, guint fewest, float *values)
+{
+  gsize n = 0;
+  for (guint k = 0; k < sorted->len; k++)
+    {
+      const Pixel *pixel = &g_array_index (sorted, Pixel, k);
+      if (!(fabs ((double)pixel->mean - centre) > most))
+        values[n++] = from_key (pixel->key);
+    }
+  if (n < fewest)
+    return NAN;
+  double step = spread_steps (values, n), sigma = core_sigma (values, n);
+  return sqrt (MAX (sigma * sigma - step * step / 12, 0)); /* what the spreading added */
 }
 
 /* And a ring here. */
@@ -231,22 +301,23 @@ judge_ring (guint band, guint first, guint n, guint worker, gpointer data)
 {
   Sample *sample = data;
   double sum = 0;
-  g_autoptr (GArray) values = g_array_new (FALSE, FALSE, sizeof (float));
+  g_autoptr (GArray) pixels = g_array_new (FALSE, FALSE, sizeof (Pixel));
   for (guint k = 0; k < PARTS; k++)
     {
-      const GArray *part = sample->parts[k].values[band];
+      const GArray *part = sample->parts[k].pixels[band];
       if (part->len > 0)
-        g_array_append_vals (values, part->data, part->len);
+        g_array_append_vals (pixels, part->data, part->len);
       sum += sample->parts[k].sum[band];
     }
-  sample->good[band] = values->len >= FEWEST;
+  sample->good[band] = pixels->len >= FEWEST;
   if (!sample->good[band])
     return;
-  float *sorted = (float *)(void *)values->data;
-  sort_floats (sorted, values->len);
-  double step = spread_steps (sorted, values->len), sigma = core_sigma (sorted, values->len);
-  sigma = sqrt (MAX (sigma * sigma - step * step / 12, 0)); /* what the spreading added */
-  sample->judged[band] = (TfNoiseRing){ sum / values->len, sigma };
+  sort_pixels (pixels);
+  g_autofree float *values = g_new (float, pixels->len);
+  double centre = (double)from_key (g_array_index (pixels, Pixel, pixels->len / 2).key);
+  double sigma = sigma_of (pixels, centre, INFINITY, FEWEST, values);
+  double calm = sigma_of (pixels, centre, OFF * sigma, MAX (FEWEST, pixels->len / 20), values);
+  sample->judged[band] = (TfNoiseRing){ sum / pixels->len, sigma > 0 && calm > 0 ? calm : sigma };
 }
 
 static void
@@ -261,7 +332,7 @@ measure_rings (const float *pixels, const TfGeometry *g, const TfWork *work, TfN
       noise->rings[noise->n++] = sample.judged[k];
   for (guint part = 0; part < PARTS; part++)
     for (guint k = 0; k < TF_NOISE_RINGS; k++)
-      g_array_unref (sample.parts[part].values[k]);
+      g_array_unref (sample.parts[part].pixels[k]);
 }
 
 double
