@@ -168,4 +168,5 @@ tf_window_update_laws_actions (TfWindow *self)
   enable (self, "put-back-divide", hold->cycle != 0);
   set_state (self, "show-polarity", tf_session_get_show_polarity (session));
   set_state (self, "all-relations", tf_session_get_all_relations (session));
+  tf_window_update_study_actions (self);
 }

@@ -7,6 +7,7 @@
 
 #include "tf-daily-summary.h"
 #include "tf-intake.h"
+#include "tf-ledger-studies.h"
 
 TfDeed *
 tf_deed_new (TfDeedKind kind, const char *person)
@@ -52,7 +53,9 @@ tf_deed_copy (const TfDeed *deed)
   copy->ends[1] = deed->ends[1];
   copy->as = deed->as;
   copy->study = g_strdup (deed->study);
+  copy->name = g_strdup (deed->name);
   copy->divide = deed->divide != NULL ? tf_moved_divide_copy (deed->divide) : NULL;
+  copy->scale = deed->scale != NULL ? tf_kept_scale_copy (deed->scale) : NULL;
   if (deed->kind != TF_DEED_TOGETHER)
     return copy;
   copy->parts = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_deed_free);
@@ -74,7 +77,9 @@ tf_deed_free (TfDeed *deed)
   g_clear_pointer (&deed->parts, g_ptr_array_unref);
   tf_undone_clear (&deed->undone);
   g_free (deed->study);
+  g_free (deed->name);
   tf_moved_divide_free (deed->divide);
+  tf_kept_scale_free (deed->scale);
   g_free (deed);
 }
 
@@ -133,6 +138,21 @@ run_tangle (const TfDeed *deed, TfLedger *ledger, GError **error)
   return tf_intake_complexity (ledger, &query, &params, NULL, NULL, error);
 }
 
+/* Of the version that stands: it was kept just before. */
+static gboolean
+run_edition (const TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
+{
+  g_autoptr (GError) problem = NULL;
+  g_autoptr (TfNamed) study = tf_ledger_study (ledger, deed->study, &problem);
+  if (problem != NULL)
+    {
+      g_propagate_error (error, g_steal_pointer (&problem));
+      return FALSE;
+    }
+  return tf_ledger_keep_edition (ledger, deed->name, deed->study, study != NULL ? study->version : 0,
+                                 deed->text, person, error);
+}
+
 static gboolean
 run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 {
@@ -177,6 +197,12 @@ run_one (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
       return run_bring (deed, ledger, error);
     case TF_DEED_TANGLE:
       return run_tangle (deed, ledger, error);
+    case TF_DEED_STUDY:
+      return tf_ledger_keep_study (ledger, deed->study, deed->text, person, error) != 0;
+    case TF_DEED_EDITION:
+      return run_edition (deed, ledger, person, error);
+    case TF_DEED_SCALE:
+      return tf_ledger_set_scale (ledger, deed->scale, person, error);
     default:
       g_return_val_if_reached (FALSE);
     }
@@ -232,6 +258,9 @@ tf_deed_name (const TfDeed *deed)
     N_ ("handing over"),
     N_ ("bringing in the summary"),
     N_ ("the complexity of the mark"),
+    N_ ("keeping the study"),
+    N_ ("keeping the edition"),
+    N_ ("the scale of the instrument"),
   };
   return _ (names[deed->kind]);
 }
@@ -260,6 +289,10 @@ tf_deed_word (const char *what)
     { "split", N_ ("split in two") },
     { "join", N_ ("joined") },
     { "several", N_ ("several at once") },
+    { "study", N_ ("study kept") },
+    { "edition", N_ ("edition kept") },
+    { "rename", N_ ("study renamed") },
+    { "scale", N_ ("scale kept") },
   };
   for (guint k = 0; k < G_N_ELEMENTS (words); k++)
     if (g_strcmp0 (words[k][0], what) == 0)

@@ -9,6 +9,7 @@
 
 #include "tf-ledger-divides.h"
 #include "tf-ledger-follow.h"
+#include "tf-ledger-scales.h"
 
 G_BEGIN_DECLS
 
@@ -33,6 +34,9 @@ typedef enum
   TF_DEED_HAND_OVER,
   TF_DEED_BRING,    /* text: path of a daily region summary */
   TF_DEED_TANGLE,   /* frame: complexity of the marks on it that have none */
+  TF_DEED_STUDY,    /* study, text: a new version; "" puts it away */
+  TF_DEED_EDITION,  /* study, name, text */
+  TF_DEED_SCALE,    /* scale */
 } TfDeedKind;
 
 typedef struct
@@ -48,8 +52,9 @@ typedef struct
   TfSight ends[2];
   GPtrArray *parts; /* of TfDeed, the same person's */
   const char *as;   /* static: "split", "join", "several" */
-  char *study;
+  char *study, *name;
   TfMovedDivide *divide;
+  TfKeptScale *scale;
   /* what came of it */
   gint64 mark; /* together: the first one kept */
   TfUndone undone;

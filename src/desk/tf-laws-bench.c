@@ -8,8 +8,10 @@
 #include <adwaita.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-actions-laws.h"
 #include "tf-chart-view.h"
 #include "tf-laws-study.h"
+#include "tf-session-studies.h"
 #include "tf-what-if-list.h"
 #include "tf-widget-style.h"
 
@@ -19,8 +21,11 @@ struct _TfLawsBench
   TfSession *session;
   GtkWidget *parts;
   GtkBox *study, *one;
-  GtkLabel *study_name, *stretch, *one_title, *words, *progress, *cautions;
-  GtkWidget *all_times, *relations;
+  GtkLabel *study_name, *study_state, *stretch, *one_title, *words, *progress, *cautions;
+  GtkMenuButton *study_menu;
+  gconstpointer in_menu; /* the list that the menu shows; compared, never followed */
+  char *name_in_menu;
+  GtkWidget *all_times, *relations, *edition_bar;
   GtkStack *stack;
   GtkGrid *charts;
   AdwStatusPage *nothing;
@@ -106,11 +111,49 @@ show_stretch (TfLawsBench *self)
   gtk_widget_set_visible (self->all_times, text->len > 0);
 }
 
+/* -- the study's name and state -------------------------------------------------------------- */
+
+static char *
+dup_state (TfLawsBench *self)
+{
+  guint version = tf_session_get_kept_version (self->session);
+  gboolean changed = tf_session_is_study_changed (self->session);
+  if (version > 0)
+    return g_strdup_printf (changed ? _ ("Changed since version %u") : _ ("Version %u, as kept"),
+                            version);
+  return g_strdup (changed ? _ ("Not kept") : _ ("As the program sets it; not kept"));
+}
+
+static void
+show_study (TfLawsBench *self)
+{
+  const char *name = tf_session_get_study (self->session)->name;
+  g_autofree char *state = dup_state (self);
+  g_autofree char *words = g_strdup_printf (_ ("Study: %s"), name);
+  GtkPopover *open = gtk_menu_button_get_popover (self->study_menu);
+  gconstpointer kept = tf_session_get_studies (self->session);
+  gtk_label_set_label (self->study_name, name);
+  gtk_label_set_label (self->study_state, state);
+  gtk_accessible_update_property (GTK_ACCESSIBLE (self->study_menu), GTK_ACCESSIBLE_PROPERTY_LABEL,
+                                  words, -1);
+  tf_widget_name_inside (GTK_WIDGET (self->study_menu), words);
+  if ((open == NULL || !gtk_widget_get_visible (GTK_WIDGET (open)))
+      && (open == NULL || kept != self->in_menu || g_strcmp0 (name, self->name_in_menu) != 0))
+    {
+      g_autoptr (GMenuModel) menu = tf_study_menu_new (self->session);
+      gtk_menu_button_set_menu_model (self->study_menu, menu);
+      self->in_menu = kept;
+      g_free (self->name_in_menu);
+      self->name_in_menu = g_strdup (name);
+    }
+  gtk_widget_set_visible (self->edition_bar, tf_session_makes_edition (self->session));
+}
+
 static void
 laws_changed (TfLawsBench *self)
 {
   const TfLawsAnswer *answer = tf_session_get_laws (self->session);
-  gtk_label_set_label (self->study_name, tf_session_get_study (self->session)->name);
+  show_study (self);
   show_stretch (self);
   show_words (self, answer);
   show_cautions (self, answer);
@@ -237,6 +280,7 @@ dispose (GObject *object)
   g_clear_pointer (&self->parts, gtk_widget_unparent);
   g_clear_pointer (&self->views, g_ptr_array_unref);
   g_clear_object (&self->rows);
+  g_clear_pointer (&self->name_in_menu, g_free);
   g_clear_object (&self->session);
   G_OBJECT_CLASS (tf_laws_bench_parent_class)->dispose (object);
 }
@@ -253,7 +297,10 @@ tf_laws_bench_class_init (TfLawsBenchClass *klass)
   gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/laws.ui");
   gtk_widget_class_bind_template_child (widget, TfLawsBench, parts);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, study);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, study_menu);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, study_name);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, study_state);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, edition_bar);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, stretch);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, all_times);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, stack);

@@ -3,8 +3,10 @@
  */
 #include "tf-laws-study.h"
 
+#include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-condition-list.h"
 #include "tf-option-row.h"
 
 typedef struct
@@ -31,14 +33,35 @@ struct _TfLawsStudy
   TfSession *session;
   GtkWidget *box;
   GPtrArray *rows[G_N_ELEMENTS (parts)]; /* of TfOptionRow */
+  TfConditionList *of_marks, *of_regions;
+  GtkLabel *floor;
 };
 
 G_DEFINE_FINAL_TYPE (TfLawsStudy, tf_laws_study, GTK_TYPE_WIDGET)
+
+/* The floor is worked out from the frames, not chosen: what stands in the sentence stands here. */
+static void
+show_floor (TfLawsStudy *self, const TfFindings *findings)
+{
+  double floor = findings != NULL ? findings->even_floor_gauss : NAN;
+  g_autofree char *text = isfinite (floor)
+                              ? g_strdup_printf (_ ("Even floor of the radial field, from the frames: "
+                                                    "%.0f G"),
+                                                 floor)
+                              : g_strdup ("");
+  gtk_label_set_label (self->floor, text);
+  gtk_widget_set_visible (GTK_WIDGET (self->floor), *text != '\0');
+}
 
 static void
 show (TfLawsStudy *self)
 {
   const TfStudy *study = tf_session_get_study (self->session);
+  const TfLawsAnswer *answer = tf_session_get_laws (self->session);
+  const TfFindings *findings = answer != NULL ? answer->findings : NULL;
+  show_floor (self, findings);
+  tf_condition_list_show (self->of_marks, study->mark_conditions, findings);
+  tf_condition_list_show (self->of_regions, study->region_conditions, findings);
   for (guint p = 0; p < G_N_ELEMENTS (parts); p++)
     for (guint k = 0; k < self->rows[p]->len; k++)
       tf_option_row_show (self->rows[p]->pdata[k], (const char *)study + parts[p].offset);
@@ -53,7 +76,36 @@ changed (TfLawsStudy *self)
   for (guint p = 0; p < G_N_ELEMENTS (parts); p++)
     for (guint k = 0; k < self->rows[p]->len; k++)
       tf_option_row_store (self->rows[p]->pdata[k], (char *)study + parts[p].offset);
+  g_ptr_array_unref (study->mark_conditions);
+  g_ptr_array_unref (study->region_conditions);
+  study->mark_conditions = tf_condition_list_dup (self->of_marks);
+  study->region_conditions = tf_condition_list_dup (self->of_regions);
   tf_session_set_study (self->session, study);
+}
+
+static TfConditionList *
+add_conditions (TfLawsStudy *self, GtkWidget *box, const char *title, const char *add)
+{
+  GtkWidget *list = tf_condition_list_new (title, add);
+  g_signal_connect_swapped (list, "changed", G_CALLBACK (changed), self);
+  gtk_box_append (GTK_BOX (box), list);
+  return TF_CONDITION_LIST (list);
+}
+
+/* The sieve is more than its options. */
+static void
+add_sieve (TfLawsStudy *self, GtkWidget *box)
+{
+  GtkWidget *floor = gtk_label_new (NULL);
+  self->of_marks = add_conditions (self, box, _ ("Conditions on marks, before one is picked"),
+                                   _ ("Add a condition on marks"));
+  self->of_regions = add_conditions (self, box, _ ("Conditions on what was picked"),
+                                     _ ("Add a condition on regions"));
+  self->floor = GTK_LABEL (floor);
+  gtk_label_set_xalign (self->floor, 0);
+  gtk_label_set_wrap (self->floor, TRUE);
+  gtk_widget_add_css_class (floor, "caption");
+  gtk_box_append (GTK_BOX (box), floor);
 }
 
 static void
@@ -75,6 +127,8 @@ add_part (TfLawsStudy *self, guint p)
       g_ptr_array_add (self->rows[p], row);
       gtk_box_append (GTK_BOX (box), row);
     }
+  if (p == 0)
+    add_sieve (self, box);
   gtk_expander_set_child (GTK_EXPANDER (part), box);
   gtk_box_append (GTK_BOX (self->box), part);
 }

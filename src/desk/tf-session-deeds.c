@@ -535,6 +535,15 @@ after_keep (TfSession *self, const TfDeed *deed)
   self->want_hint = FALSE;
 }
 
+/* Deeds that the laws part counts until they are in the ledger. */
+static gboolean
+is_of_study (const TfDeed *deed)
+{
+  return deed->kind == TF_DEED_DIVIDE || deed->kind == TF_DEED_STUDY
+         || (deed->kind == TF_DEED_TOGETHER
+             && ((TfDeed *)deed->parts->pdata[0])->kind == TF_DEED_STUDY);
+}
+
 static void
 saved (TfWriter *writer, TfDeed *deed, TfSession *self)
 {
@@ -546,7 +555,7 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
       tf_session_emit (self, TF_SIGNAL_STATUS);
       return;
     }
-  if (deed->kind == TF_DEED_DIVIDE)
+  if (is_of_study (deed))
     tf_session_divide_saved (self);
   if (deed->kind == TF_DEED_KEEP || deed->mark != 0)
     after_keep (self, deed);
@@ -568,7 +577,7 @@ static void
 refused (TfWriter *writer, TfDeed *deed, const char *message, TfSession *self)
 {
   self->keeping = FALSE;
-  if (deed->kind == TF_DEED_DIVIDE)
+  if (is_of_study (deed))
     tf_session_divide_saved (self);
   self->judging = 0;
   tf_session_forget_hoped (self);

@@ -21,6 +21,11 @@ struct _TfSessionLaws
   TfDivides *moved;    /* all divides with the one in hand; NULL: none is in hand */
   guint keeping;       /* divides on their way into the ledger */
   gboolean show_polarity, was_shown; /* was_shown: at any time while the one in hand moved */
+
+  GPtrArray *studies, *editions; /* of TfNamed: as they stand in the ledger; NULL: not read yet */
+  char *kept_text;               /* what stands under the study's name, to compare; NULL: nothing */
+  GHashTable *set_aside;         /* name -> TfStudy: changed and not kept when another was chosen */
+  GCancellable *editing;         /* an edition is being worked out */
 };
 
 void tf_session_laws_init (TfSession *session);
@@ -36,5 +41,14 @@ void tf_session_take_divides (TfSession *session, const TfStudy *read, TfJudge *
 void tf_session_judge_divide (TfSession *session);
 /** tf_session_divide_saved: the deed is in the ledger, or will not come. */
 void tf_session_divide_saved (TfSession *session);
+/** tf_session_read_studies: the ledger may have others by now. */
+void tf_session_read_studies (TfSession *session);
+void tf_session_studies_close (TfSession *session);
+/** tf_session_take_study: (transfer full): the study from now on, with its divides. */
+void tf_session_take_study (TfSession *session, TfStudy *study);
+/** tf_session_study_deed: (transfer full): keeps it. tf_session_push_study: (transfer full): a deed about
+ * a study; what the window has is newer until it is in the ledger. */
+TfDeed *tf_session_study_deed (TfSession *session, const TfStudy *study);
+void tf_session_push_study (TfSession *session, TfDeed *deed);
 
 G_END_DECLS

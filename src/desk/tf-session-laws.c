@@ -6,6 +6,7 @@
 #include "tf-session-laws-private.h"
 
 #include <math.h>
+#include <string.h>
 
 void
 tf_session_laws_init (TfSession *self)
@@ -34,6 +35,7 @@ tf_session_laws_close (TfSession *self)
   laws->hold = (TfDivideHold){ 0 };
   laws->awaits = FALSE;
   laws->keeping = 0;
+  tf_session_studies_close (self);
   g_clear_pointer (&laws->study->divides, tf_divides_unref);
   g_clear_pointer (&laws->study->divides_shown, g_free);
 }
@@ -84,6 +86,7 @@ tf_session_forget_laws (TfSession *self)
 {
   if (self->laws->work != NULL)
     tf_laws_work_forget (self->laws->work);
+  tf_session_read_studies (self);
   tf_session_ask_laws (self);
 }
 
@@ -106,8 +109,14 @@ tf_session_set_study (TfSession *self, const TfStudy *study)
   copy->divides_shown = g_steal_pointer (&laws->study->divides_shown);
   if (laws->study->divides != NULL)
     copy->divides = tf_divides_with_params (laws->study->divides, &copy->divide);
-  tf_study_free (laws->study);
-  laws->study = copy;
+  tf_session_take_study (self, copy);
+}
+
+void
+tf_session_take_study (TfSession *self, TfStudy *study)
+{
+  tf_study_free (self->laws->study);
+  self->laws->study = study;
   tf_session_ask_laws (self);
   tf_session_refresh (self, FALSE); /* the wings are judged by this study, too */
   tf_session_emit (self, TF_SIGNAL_LAWS);
@@ -122,6 +131,7 @@ tf_session_show_laws (TfSession *self, gboolean shown)
   self->laws->shown = shown;
   if (!shown)
     tf_session_choose_divide (self, 0, 0, 0);
+  tf_session_read_studies (self);
   tf_session_ask_laws (self);
   tf_session_emit (self, TF_SIGNAL_LAWS);
 }
@@ -164,7 +174,8 @@ void
 tf_session_take_divides (TfSession *self, const TfStudy *read, TfJudge *judge)
 {
   TfSessionLaws *laws = self->laws;
-  if (laws->keeping > 0 || laws->hold.in_hand) /* what is in hand, or on its way, is newer */
+  /* what is in hand, or on its way, is newer; and another study may have been chosen meanwhile */
+  if (laws->keeping > 0 || laws->hold.in_hand || strcmp (read->name, laws->study->name) != 0)
     return;
   tf_judge_unref (self->judge);
   self->judge = tf_judge_ref (judge);

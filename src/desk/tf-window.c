@@ -527,6 +527,7 @@ tf_window_init (TfWindow *self)
   connect_session (self);
   tf_window_add_actions (self);
   tf_window_add_laws_actions (self);
+  tf_window_add_study_actions (self);
   g_signal_connect_object (self->benches, "notify::visible-child", G_CALLBACK (bench_changed), self,
                            G_CONNECT_SWAPPED);
   tf_window_add_drop (self);

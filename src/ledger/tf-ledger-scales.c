@@ -9,6 +9,17 @@
 #include "tf-json.h"
 #include "tf-ledger-private.h"
 
+TfKeptScale *
+tf_kept_scale_copy (const TfKeptScale *scale)
+{
+  TfKeptScale *copy = g_memdup2 (scale, sizeof *scale);
+  copy->instrument = g_strdup (scale->instrument);
+  copy->reference = g_strdup (scale->reference);
+  copy->evidence = g_strdup (scale->evidence);
+  copy->person = g_strdup (scale->person);
+  return copy;
+}
+
 void
 tf_kept_scale_free (TfKeptScale *scale)
 {

@@ -18,6 +18,7 @@ typedef struct
   char *evidence;       /* how it was got: canonical option text and counts */
   char *person;         /* who kept it */
 } TfKeptScale;
+TfKeptScale *tf_kept_scale_copy (const TfKeptScale *scale);
 void tf_kept_scale_free (TfKeptScale *scale);
 
 /** tf_ledger_set_scale: a deed; factor NaN takes the instrument's scale back. */

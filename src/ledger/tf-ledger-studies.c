@@ -131,11 +131,8 @@ tf_ledger_keep_study (TfLedger *ledger, const char *name, const char *text, gint
       subject, text);
   gint64 version
       = 1 + tf_value (ledger, NULL, 0, "SELECT max (version) FROM study WHERE uid = ?1", "h", subject);
-  if (same != 0)
-    {
-      tf_ledger_rollback (ledger);
-      return (guint)same;
-    }
+  if (same != 0) /* nothing to write; what is done as one with it goes on */
+    return end_deed (ledger, TRUE, error) ? (guint)same : 0;
   gboolean ok = append (ledger, "study", name, NULL, (guint)version, text, person, error);
   return end_deed (ledger, ok, error) ? (guint)version : 0;
 }
@@ -169,10 +166,13 @@ tf_ledger_keep_edition (TfLedger *ledger, const char *name, const char *study, g
   "d.seq = t.seq), (SELECT a.wall FROM act a WHERE a.replica = t.replica AND a.seq = t.seq)"
 #define STUDIES_SQL                                                                                \
   "SELECT t.name, t.version, NULL, lower (hex (t.checksum)), t.text, " WHO " FROM study t "        \
-  "WHERE t.live = 1 AND (?1 = '' OR t.name = ?1) ORDER BY t.name"
+  "WHERE t.live = 1 AND t.text <> '' AND (?1 = '' OR t.name = ?1) ORDER BY t.name"
 #define EDITIONS_SQL                                                                               \
   "SELECT t.name, t.study_version, t.study, lower (hex (t.checksum)), t.text, " WHO                \
   " FROM edition t WHERE t.live = 1 AND (?1 = '' OR t.name = ?1) ORDER BY t.id"
+#define EDITION_NAMES_SQL                                                                          \
+  "SELECT t.name, t.study_version, t.study, lower (hex (t.checksum)), '', " WHO                    \
+  " FROM edition t WHERE t.live = 1 AND ?1 = '' ORDER BY t.id"
 
 static TfNamed *
 read_named (sqlite3_stmt *query)
@@ -234,4 +234,11 @@ tf_ledger_editions (TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   return read_all (ledger, EDITIONS_SQL, "", error);
+}
+
+GPtrArray *
+tf_ledger_edition_names (TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (ledger != NULL, NULL);
+  return read_all (ledger, EDITION_NAMES_SQL, "", error);
 }

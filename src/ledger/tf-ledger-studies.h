@@ -25,7 +25,7 @@ typedef struct
 void tf_named_free (TfNamed *named);
 
 /** tf_ledger_keep_study: a new version of the study @name; nothing when the last one has that text.
- * Returns its version, 0 on error. */
+ * An empty text puts the study away: no version stands. Returns its version, 0 on error. */
 guint tf_ledger_keep_study (TfLedger *ledger, const char *name, const char *text, gint64 person,
                             GError **error);
 /** tf_ledger_study: the version that stands; NULL without error when there is none. */
@@ -40,6 +40,8 @@ gboolean tf_ledger_keep_edition (TfLedger *ledger, const char *name, const char 
 TfNamed *tf_ledger_edition (TfLedger *ledger, const char *name, GError **error);
 /** tf_ledger_editions: (element-type TfNamed) that stand, in the order they were kept. */
 GPtrArray *tf_ledger_editions (TfLedger *ledger, GError **error);
+/** tf_ledger_edition_names: the same without their texts, which may be long. */
+GPtrArray *tf_ledger_edition_names (TfLedger *ledger, GError **error);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfNamed, tf_named_free)
 

@@ -382,6 +382,27 @@ tf_what_if_names (void)
   return names;
 }
 
+gboolean
+tf_what_if_apply (const char *name, TfStudy *study)
+{
+  g_return_val_if_fail (name != NULL && study != NULL, FALSE);
+  for (guint k = 0; k < G_N_ELEMENTS (choices); k++)
+    {
+      if (strcmp (choices[k].name, name) != 0)
+        continue;
+      Variant v = { .study = *study, .floor_factor = NAN };
+      gboolean other = choices[k].change (&v);
+      gboolean by_options = fabs (v.later_s) < 1 && !v.bracketed && isnan (v.floor_factor);
+      if (!other || !by_options || choices[k].change == as_chosen)
+        return FALSE;
+      if (choices[k].change == hints_out)
+        v.study.sieve.with_hints = FALSE;
+      *study = v.study;
+      return TRUE;
+    }
+  return FALSE;
+}
+
 const char *
 tf_what_if_missing (const char *missing)
 {

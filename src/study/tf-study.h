@@ -112,6 +112,10 @@ typedef struct
  * the first, "as-chosen". */
 const char **tf_what_if_names (void);
 
+/** tf_what_if_apply: makes that choice the study's own. FALSE, and nothing done, when it is so already
+ * or no option of a study says it (another floor, other minima). */
+gboolean tf_what_if_apply (const char *name, TfStudy *study);
+
 /** tf_what_if_missing: that reason in words. */
 const char *tf_what_if_missing (const char *missing);
 

@@ -3,6 +3,7 @@
  */
 /* The Laws bench: what the study finds, divides in hand, stretches picked on the wings. */
 
+#include "test-desk-laws.h"
 #include "test-desk.h"
 
 #include <math.h>
@@ -80,8 +81,8 @@ add_mark (TfLedger *ledger, gint64 frame, const char *time, double lat, int lead
 /* In mid 2008, half a year before the minimum, the divide lies near 17 deg: four regions of 24 deg
  * with the leader of cycle 24 keep the law; if the divide lay above them they would break it. In
  * 2013 ten more, one the wrong way round. */
-static char *
-make_ledger (const char *name)
+char *
+test_desk_laws_ledger (const char *name)
 {
   char *path = test_desk_path (name);
   g_autoptr (TfLedger) ledger = tf_ledger_create (path, 'T', NULL);
@@ -109,8 +110,8 @@ is_complete (gpointer session)
   return answer != NULL && answer->complete && !tf_session_awaits_laws (session);
 }
 
-static TfSession *
-session_on (const char *path)
+TfSession *
+test_desk_laws_session (const char *path)
 {
   TfSession *session = tf_session_new ();
   tf_session_open_ledger (session, path, 0);
@@ -133,8 +134,8 @@ all_cycles (TfSession *session)
 static void
 findings_come (void)
 {
-  g_autofree char *path = make_ledger ("laws.ledger");
-  g_autoptr (TfSession) session = session_on (path);
+  g_autofree char *path = test_desk_laws_ledger ("laws.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
   TfLawsAnswer *answer = tf_session_get_laws (session);
   g_assert_cmpint (answer->depth, ==, TF_FINDINGS_COMPLETE);
   g_assert_cmpuint (all_cycles (session)->n, ==, 14);
@@ -161,8 +162,8 @@ has_all (gpointer session)
 static void
 stretches_are_followed (void)
 {
-  g_autofree char *path = make_ledger ("stretch.ledger");
-  g_autoptr (TfSession) session = session_on (path);
+  g_autofree char *path = test_desk_laws_ledger ("stretch.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
   GListModel *frames = tf_session_get_frames (session);
   g_assert_cmpuint (g_list_model_get_n_items (frames), ==, 2);
   tf_session_pick_band (session, 2010, 2014, -30, 0);
@@ -219,8 +220,8 @@ count_moved (const char *path)
 static void
 a_divide_in_hand_moves_the_numbers (void)
 {
-  g_autofree char *path = make_ledger ("divide.ledger");
-  g_autoptr (TfSession) session = session_on (path);
+  g_autofree char *path = test_desk_laws_ledger ("divide.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
   tf_session_step_divide (session, 1, 2006, 2010);
   const TfDivideHold *hold = tf_session_get_divide (session);
   g_assert_cmpint (hold->cycle, ==, 24);
@@ -275,8 +276,8 @@ says_shown (gpointer session)
 static void
 polarity_in_sight_is_told (void)
 {
-  g_autofree char *path = make_ledger ("shown.ledger");
-  g_autoptr (TfSession) session = session_on (path);
+  g_autofree char *path = test_desk_laws_ledger ("shown.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
   g_assert_cmpuint (count_verdicts (session, TF_VERDICT_BREAKS), ==, 1);
   tf_session_set_show_polarity (session, TRUE);
   tf_session_choose_divide (session, 24, 1, TF_DIVIDE_WHOLE);
@@ -320,7 +321,7 @@ the_bench_is_shown_and_left (void)
 {
   if (!test_desk_has_display ())
     return;
-  g_autofree char *path = make_ledger ("bench.ledger");
+  g_autofree char *path = test_desk_laws_ledger ("bench.ledger");
   g_autoptr (AdwApplication) application
       = adw_application_new ("io.tiltfield.Test", G_APPLICATION_NON_UNIQUE);
   g_application_set_resource_base_path (G_APPLICATION (application), "/io/tiltfield/Tiltfield");

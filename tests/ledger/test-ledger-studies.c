@@ -52,6 +52,29 @@ test_versions (Fixture *f, gconstpointer data)
   assert_standing (f, "3 {\"a\":3}");
 }
 
+/* Put away it is in no list; a version that is there already does not end what is done as one. */
+static void
+test_put_away (Fixture *f, gconstpointer data)
+{
+  g_autoptr (GError) error = NULL;
+  gint64 person = tf_ledger_person (f->ledger, "north", NULL);
+  keep (f, "{\"a\":1}");
+  keep (f, "");
+  assert_standing (f, "none");
+  g_autoptr (GPtrArray) studies = tf_ledger_studies (f->ledger, NULL);
+  g_assert_cmpuint (studies->len, ==, 0);
+  g_assert_true (tf_ledger_undo (f->ledger, person, NULL, NULL));
+  assert_standing (f, "1 {\"a\":1}");
+  g_assert_true (tf_ledger_begin_bundle (f->ledger, "edition", &error));
+  g_assert_cmpuint (keep (f, "{\"a\":1}"), ==, 1);
+  g_assert_true (tf_ledger_keep_edition (f->ledger, "first", "narrow", 1, "{}", person, &error));
+  g_assert_true (tf_ledger_end_bundle (f->ledger, TRUE, &error));
+  g_autoptr (GPtrArray) editions = tf_ledger_edition_names (f->ledger, NULL);
+  g_assert_cmpuint (editions->len, ==, 1);
+  g_assert_cmpstr (((TfNamed *)g_ptr_array_index (editions, 0))->text, ==, "");
+  fixture_check (f->ledger, "");
+}
+
 static void
 test_editions (Fixture *f, gconstpointer data)
 {
@@ -94,6 +117,7 @@ void
 add_studies_tests (void)
 {
   FIXTURE_TEST ("/ledger/studies/every-keeping-is-a-version-that-undo-takes-back", test_versions);
+  FIXTURE_TEST ("/ledger/studies/an-empty-text-puts-a-study-away", test_put_away);
   FIXTURE_TEST ("/ledger/studies/an-edition-is-never-changed", test_editions);
   FIXTURE_TEST ("/ledger/studies/what-is-changed-is-found", test_tampering);
 }
