@@ -15,7 +15,7 @@
 struct _TfFollowBench
 {
   GtkWidget parent;
-  GtkWidget *box, *work, *nothing, *beside_box, *offers, *offer_title, *busy;
+  GtkWidget *box, *work, *nothing, *beside_box, *offers, *others, *others_title, *busy;
   GtkDropDown *passage;
   GtkListView *strip, *beside;
   TfSeriesView *series;
@@ -25,7 +25,14 @@ struct _TfFollowBench
   GtkGrid *facts;
   TfFollowed *followed;
   GtkSingleSelection *moment, *beside_moment;
+  guint frames;     /* since the list changed */
+  guint showing;    /* tick that brings the chosen look into sight; 0 */
   gboolean filling; /* what changes now is not the person's doing */
+};
+
+enum
+{
+  SETTLED_FRAMES = 3 /* a list knows its width some frames after it was filled */
 };
 
 G_DEFINE_FINAL_TYPE (TfFollowBench, tf_follow_bench, GTK_TYPE_WIDGET)
@@ -65,6 +72,32 @@ fill_strip (GtkListView *strip, GListModel *looks)
   g_object_unref (factory);
   gtk_list_view_set_model (strip, GTK_SELECTION_MODEL (selection));
   return selection;
+}
+
+/* The chosen look is wholly in sight, in the middle when it was not; all cells are equally wide. */
+static gboolean
+show_now (GtkWidget *strip, GdkFrameClock *clock, gpointer data)
+{
+  TfFollowBench *self = data;
+  if (++self->frames < SETTLED_FRAMES)
+    return G_SOURCE_CONTINUE;
+  GtkAdjustment *across = gtk_scrollable_get_hadjustment (GTK_SCROLLABLE (strip));
+  guint n = g_list_model_get_n_items (tf_followed_get_looks (self->followed));
+  double now = tf_followed_get_now (self->followed), page = gtk_adjustment_get_page_size (across),
+         at = gtk_adjustment_get_value (across), cell = gtk_adjustment_get_upper (across) / MAX (n, 1);
+  if (page > cell && (now * cell < at || (now + 1) * cell > at + page))
+    gtk_adjustment_set_value (across, (now + 0.5) * cell - page / 2);
+  self->showing = 0;
+  return G_SOURCE_REMOVE;
+}
+
+/* After the list has been laid out anew. */
+static void
+want_now_in_sight (TfFollowBench *self)
+{
+  self->frames = 0;
+  if (self->showing == 0 && gtk_widget_get_mapped (GTK_WIDGET (self->strip)))
+    self->showing = gtk_widget_add_tick_callback (GTK_WIDGET (self->strip), show_now, self, NULL);
 }
 
 static void
@@ -217,12 +250,11 @@ add_offer (TfFollowBench *self, const TfPassageContent *content, guint at)
   gtk_box_append (GTK_BOX (self->offers), buttons);
 }
 
+/* The passages that are one region with it already. */
 static void
-show_offers (TfFollowBench *self, const TfPassageContent *content)
+show_others (TfFollowBench *self, const TfPassageContent *content)
 {
-  clear_children (self->offers);
-  for (guint k = 0; k < content->returns->len; k++)
-    add_offer (self, content, k);
+  clear_children (self->others);
   for (guint k = 0; k < content->others->len; k++)
     {
       const TfPassageRow *row = g_ptr_array_index (content->others, k);
@@ -231,14 +263,24 @@ show_offers (TfFollowBench *self, const TfPassageContent *content)
       g_autofree char *name = tf_passage_dup_name (row), *day = tf_series_chart_dup_day (row->first_time);
       g_autofree char *text
           = g_strdup_printf (_ ("The same region: %s from %s, %s"), name, day, row->vantage);
-      gtk_box_append (GTK_BOX (self->offers), label_new (text, TRUE));
+      gtk_box_append (GTK_BOX (self->others), label_new (text, TRUE));
       GtkWidget *button
           = button_new (_ ("Side by side"), "win.follow-beside", g_variant_new_int64 (row->id));
       gtk_widget_set_halign (button, GTK_ALIGN_START);
-      gtk_box_append (GTK_BOX (self->offers), button);
+      gtk_box_append (GTK_BOX (self->others), button);
     }
-  gtk_widget_set_visible (self->offer_title,
-                          gtk_widget_get_first_child (self->offers) != NULL);
+  gtk_widget_set_visible (self->others_title,
+                          gtk_widget_get_first_child (self->others) != NULL);
+}
+
+/* What waits for an answer stands above the facts. */
+static void
+show_offers (TfFollowBench *self, const TfPassageContent *content)
+{
+  clear_children (self->offers);
+  for (guint k = 0; k < content->returns->len; k++)
+    add_offer (self, content, k);
+  gtk_widget_set_visible (self->offers, gtk_widget_get_first_child (self->offers) != NULL);
 }
 
 static void
@@ -274,6 +316,7 @@ passage_changed (TfFollowBench *self)
     return;
   show_links (self, content);
   show_offers (self, content);
+  show_others (self, content);
   show_beside (self);
 }
 
@@ -290,10 +333,8 @@ moment_changed (TfFollowBench *self)
   self->filling = TRUE;
   guint selected = gtk_single_selection_get_selected (self->moment);
   if (now >= 0 && selected != (guint)now)
-    {
-      gtk_single_selection_set_selected (self->moment, (guint)now);
-      gtk_widget_activate_action (GTK_WIDGET (self->strip), "list.scroll-to-item", "u", (guint)now);
-    }
+    gtk_single_selection_set_selected (self->moment, (guint)now);
+  want_now_in_sight (self);
   self->filling = FALSE;
   if (!tf_followed_get_playing (self->followed) && !tf_followed_get_blink (self->followed))
     show_facts (self);
@@ -386,6 +427,9 @@ static void
 dispose (GObject *object)
 {
   TfFollowBench *self = TF_FOLLOW_BENCH (object);
+  if (self->showing != 0)
+    gtk_widget_remove_tick_callback (GTK_WIDGET (self->strip), self->showing);
+  self->showing = 0;
   g_clear_object (&self->moment);
   g_clear_object (&self->beside_moment);
   g_clear_object (&self->followed);
@@ -414,7 +458,8 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfFollowBench, facts);
   gtk_widget_class_bind_template_child (widget, TfFollowBench, links);
   gtk_widget_class_bind_template_child (widget, TfFollowBench, offers);
-  gtk_widget_class_bind_template_child (widget, TfFollowBench, offer_title);
+  gtk_widget_class_bind_template_child (widget, TfFollowBench, others);
+  gtk_widget_class_bind_template_child (widget, TfFollowBench, others_title);
 }
 
 static void

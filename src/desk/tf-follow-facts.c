@@ -41,22 +41,27 @@ measure_at (const TfPassageContent *content, int point)
 
 /* -- when ------------------------------------------------------------------------------------ */
 
-static char *
-dup_end (TfTime time, TfEnd end, gboolean born)
+static void
+add_end (GPtrArray *facts, TfTime time, TfEnd end, gboolean born)
 {
-  g_autofree char *day = tf_series_chart_dup_day (time);
-  switch (end)
+  const char *where = _ ("end of frames"), *how = _ ("No frame was taken near that time.");
+  if (end == TF_END_ON_DISK)
     {
-    case TF_END_ON_DISK:
-      return g_strdup_printf (born ? _ ("%s, born on the disk") : _ ("%s, gone on the disk"), day);
-    case TF_END_LIMB:
-      return g_strdup_printf (born ? _ ("%s, came over the limb") : _ ("%s, at the limb"), day);
-    case TF_END_FAR_SIDE:
-      return g_strdup_printf (born ? _ ("%s, born on the far side") : _ ("%s, ended on the far side"),
-                              day);
-    default:
-      return g_strdup_printf (_ ("%s, no frames beyond"), day);
+      where = born ? _ ("born on disk") : _ ("gone on disk");
+      how = _ ("Its place was in sight, and nothing was there.");
     }
+  else if (end == TF_END_LIMB)
+    {
+      where = _ ("at the limb");
+      how = born ? _ ("It came over the limb.") : _ ("It went over the limb.");
+    }
+  else if (end == TF_END_FAR_SIDE)
+    {
+      where = _ ("on the far side");
+      how = _ ("Half a rotation away its place was in sight, and nothing was there.");
+    }
+  g_autofree char *day = tf_series_chart_dup_day (time);
+  add (facts, born ? _ ("first seen") : _ ("last seen"), g_strdup_printf ("%s, %s", day, where), how);
 }
 
 static char *
@@ -106,8 +111,10 @@ add_taken (GPtrArray *facts, TfFollowed *followed, const TfPassageContent *conte
   gboolean open = flux && !tf_followed_get_derived (followed)->bracketed;
   g_autofree char *day = tf_series_chart_dup_day (m->time);
   add (facts, flux ? _ ("greatest flux") : _ ("nearest meridian"),
-       open ? g_strdup_printf (_ ("%s (peak not bracketed)"), day) : g_strdup (day),
-       flux ? _ ("Sampling rule: the mark of greatest unsigned flux among those with μ ≥ 0.5.")
+       open ? g_strdup_printf (_ ("%s, not bracketed"), day) : g_strdup (day),
+       open   ? _ ("Sampling rule: the mark of greatest unsigned flux among those with μ ≥ 0.5. It is the "
+                   "first or the last of them: the peak may lie beyond.")
+       : flux ? _ ("Sampling rule: the mark of greatest unsigned flux among those with μ ≥ 0.5.")
             : _ ("Sampling rule: the mark nearest the central meridian."));
   add (facts, _ ("tilt then"), dup_tilt (m), NULL);
   add (facts, _ ("flux then"), tf_chart_dup_flux (m->flux_unsigned_mx), _ ("Unsigned."));
@@ -178,8 +185,8 @@ tf_follow_facts (TfFollowed *followed)
   if (content == NULL || content->rows->len == 0)
     return facts;
   const TfPassageRow *p = content->passage;
-  add (facts, _ ("first seen"), dup_end (p->first_time, p->born, TRUE), NULL);
-  add (facts, _ ("last seen"), dup_end (p->last_time, p->ended, FALSE), NULL);
+  add_end (facts, p->first_time, p->born, TRUE);
+  add_end (facts, p->last_time, p->ended, FALSE);
   add (facts, _ ("missing"), dup_missing (content), NULL);
   add_taken (facts, followed, content);
   add_derived (facts, followed);
