@@ -290,26 +290,43 @@ draw_sign (cairo_t *cr, const TfChartStyle *style, double x, double y, Panel pan
 }
 
 static void
+draw_point (cairo_t *cr, const TfSeriesMoment *p, const Shown *s, const TfPlot *plot,
+            const TfChartStyle *style, Panel panel)
+{
+  for (int j = 0; j < s->n; j++)
+    {
+      if (!isfinite (s->value[j]))
+        continue;
+      tf_plot_whisker_y (cr, plot, style, p->time.s, s->value[j] - s->sigma[j],
+                         s->value[j] + s->sigma[j], 0);
+      draw_sign (cr, style, tf_plot_x (plot, p->time.s), tf_plot_y (plot, s->value[j]), panel, j,
+                 p->hint);
+    }
+}
+
+/* Those of one faintness together: a group a point takes a second for a hundred of them. */
+static void
 draw_points (cairo_t *cr, const TfSeriesChart *chart, const TfPlot *plot, const TfChartStyle *style,
              Panel panel)
 {
-  for (guint k = 0; k < chart->n; k++)
+  static const double strengths[] = { 0.35, 0.6, 1 };
+  for (guint way = 0; way < G_N_ELEMENTS (strengths); way++)
     {
-      const TfSeriesMoment *p = &chart->points[k];
-      Shown s = shown_in (chart, p, panel);
-      double x = tf_plot_x (plot, p->time.s);
-      cairo_push_group (cr);
-      for (int j = 0; j < s.n; j++)
+      guint drawn = 0;
+      for (guint k = 0; k < chart->n; k++)
         {
-          if (!isfinite (s.value[j]))
+          const TfSeriesMoment *p = &chart->points[k];
+          Shown s = shown_in (chart, p, panel);
+          if (way != (s.faint ? 0 : p->hint ? 1 : 2))
             continue;
-          double y = tf_plot_y (plot, s.value[j]);
-          tf_plot_whisker_y (cr, plot, style, p->time.s, s.value[j] - s.sigma[j],
-                             s.value[j] + s.sigma[j], 0);
-          draw_sign (cr, style, x, y, panel, j, p->hint);
+          if (drawn++ == 0)
+            cairo_push_group (cr);
+          draw_point (cr, p, &s, plot, style, panel);
         }
+      if (drawn == 0)
+        continue;
       cairo_pop_group_to_source (cr);
-      cairo_paint_with_alpha (cr, s.faint ? 0.35 : p->hint ? 0.6 : 1.0);
+      cairo_paint_with_alpha (cr, strengths[way]);
     }
 }
 
@@ -343,13 +360,6 @@ draw_panel (cairo_t *cr, const TfSeriesChart *chart, const TfPlot *plot, const T
   double text = style->text_pt;
   draw_head (cr, plot, style, panel);
   shade_limb (cr, chart, plot, style);
-  if (tf_time_is_known (chart->from) && tf_time_is_known (chart->to))
-    {
-      tf_chart_set_alpha (cr, style->teal, 0.1);
-      double left = tf_plot_x (plot, chart->from.s), right = tf_plot_x (plot, chart->to.s);
-      cairo_rectangle (cr, left, plot->plot.y, right - left, plot->plot.height);
-      cairo_fill (cr);
-    }
   tf_plot_draw_y (cr, plot, style,
                   panel == PANEL_MU ? 0.5
                                     : tf_plot_step (plot->y0, plot->y1, plot->plot.height, text * 1.7),
@@ -361,58 +371,105 @@ draw_panel (cairo_t *cr, const TfSeriesChart *chart, const TfPlot *plot, const T
   draw_points (cr, chart, plot, style, panel);
 }
 
-/* Words stand at the right of the panel's head, one after the other from the right. */
+static double
+measure_words (cairo_t *cr, const TfChartStyle *style, const char *words)
+{
+  double width, height;
+  tf_chart_measure (cr, style, words, &width, &height);
+  return width + style->text_pt * 1.2;
+}
+
+/* At the right of the panel's head, one after the other from the right; those that have no room are
+ * left out, what the rule takes last. */
 static void
 draw_words (cairo_t *cr, const TfSeriesChart *chart, const Layout *layout,
             const TfChartStyle *style)
 {
   const TfPlot *plot = &layout->plots[PANEL_TILT];
-  double text = style->text_pt, y = plot->plot.y - text * 0.35,
-         right = plot->plot.x + plot->plot.width;
-  if (isfinite (chart->joy_deg) && chart->joy_name != NULL)
-    {
-      g_autofree char *joy = g_strdup_printf (_ ("Joy's law, %s"), chart->joy_name);
-      right -= tf_chart_text (cr, style, right, y, 1, 1, style->teal, joy) + text * 1.2;
-    }
-  gboolean limb = FALSE;
+  gboolean limb = FALSE,
+           taken = chart->taken >= 0 && chart->taken < (int)chart->n && chart->taken_words != NULL;
   for (guint k = 0; k < chart->n; k++)
     limb = limb || chart->points[k].mu < chart->limb_mu;
-  if (limb)
+  g_autofree char *joy = isfinite (chart->joy_deg) && chart->joy_name != NULL
+                             ? g_strdup_printf (_ ("Joy's law, %s"), chart->joy_name)
+                             : NULL,
+                  *near = limb ? g_strdup_printf (_ ("shaded: μ < %.1f"), chart->limb_mu) : NULL;
+  double text = style->text_pt, y = plot->plot.y - text * 0.35,
+         right = plot->plot.x + plot->plot.width,
+         left = plot->plot.x + measure_words (cr, style, _ (panels[PANEL_TILT].name)),
+         room = right - left - (taken ? measure_words (cr, style, chart->taken_words) : 0);
+  const char *const words[] = { joy, near };
+  for (guint k = 0; k < G_N_ELEMENTS (words); k++)
     {
-      g_autofree char *near = g_strdup_printf (_ ("shaded: μ < %.1f"), chart->limb_mu);
-      right -= tf_chart_text (cr, style, right, y, 1, 1, style->faint, near) + text * 1.2;
+      double width = words[k] != NULL ? measure_words (cr, style, words[k]) : 0;
+      if (words[k] == NULL || width > room)
+        continue;
+      tf_chart_text (cr, style, right, y, 1, 1, k == 0 ? style->teal : style->faint, words[k]);
+      right -= width;
+      room -= width;
     }
-  if (chart->taken < 0 || chart->taken >= (int)chart->n || chart->taken_words == NULL)
+  if (!taken || room < 0)
     return;
-  double x = tf_plot_x (plot, chart->points[chart->taken].time.s), width, height;
-  tf_chart_measure (cr, style, chart->taken_words, &width, &height);
-  double left = plot->plot.x + text * 6; /* clear of the panel's name */
-  x = CLAMP (x + text * 0.4, left, MAX (right - width, left));
-  tf_chart_text (cr, style, x, y, 0, 1, style->ink, chart->taken_words);
+  double x = tf_plot_x (plot, chart->points[chart->taken].time.s) + text * 0.4;
+  tf_chart_text (cr, style, CLAMP (x, left, right - measure_words (cr, style, chart->taken_words)), y,
+                 0, 1, style->ink, chart->taken_words);
+}
+
+static void
+draw_stretch (cairo_t *cr, const TfSeriesChart *chart, const Layout *layout,
+              const TfChartStyle *style)
+{
+  if (!tf_time_is_known (chart->from) || !tf_time_is_known (chart->to))
+    return;
+  tf_chart_set_alpha (cr, style->teal, 0.1);
+  for (guint k = 0; k < layout->n; k++)
+    {
+      const TfPlot *plot = &layout->plots[k];
+      double left = tf_plot_x (plot, chart->from.s), right = tf_plot_x (plot, chart->to.s);
+      cairo_rectangle (cr, left, plot->plot.y, right - left, plot->plot.height);
+    }
+  cairo_fill (cr);
+}
+
+void
+tf_series_chart_draw_still (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
+                            TfArea area)
+{
+  cairo_save (cr);
+  Layout layout = lay_out (chart, style, area);
+  for (guint k = 0; k < layout.n && chart->n > 0; k++)
+    draw_panel (cr, chart, &layout.plots[k], style, (Panel)k);
+  if (chart->n > 0)
+    draw_days (cr, &layout, style, area);
+  else
+    tf_chart_text (cr, style, area.x + area.width / 2, area.y + area.height / 2, 0.5, 0.5,
+                   style->faint, _ ("No passage is chosen."));
+  cairo_restore (cr);
+}
+
+void
+tf_series_chart_draw_over (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
+                           TfArea area)
+{
+  if (chart->n == 0)
+    return;
+  cairo_save (cr);
+  Layout layout = lay_out (chart, style, area);
+  draw_stretch (cr, chart, &layout, style);
+  if (chart->taken >= 0 && chart->taken < (int)chart->n)
+    draw_moment (cr, &layout, style, chart->points[chart->taken].time, style->slate, 0.12);
+  if (chart->now >= 0 && chart->now < (int)chart->n)
+    draw_moment (cr, &layout, style, chart->points[chart->now].time, style->positive, 0.16);
+  draw_words (cr, chart, &layout, style);
+  cairo_restore (cr);
 }
 
 void
 tf_series_chart_draw (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
                       TfArea area)
 {
-  cairo_save (cr);
-  if (chart->n == 0)
-    {
-      tf_chart_text (cr, style, area.x + area.width / 2, area.y + area.height / 2, 0.5, 0.5,
-                     style->faint, _ ("No passage is chosen."));
-      cairo_restore (cr);
-      return;
-    }
-  Layout layout = lay_out (chart, style, area);
-  for (guint k = 0; k < layout.n; k++)
-    draw_panel (cr, chart, &layout.plots[k], style, (Panel)k);
-  if (chart->taken >= 0 && chart->taken < (int)chart->n)
-    draw_moment (cr, &layout, style, chart->points[chart->taken].time, style->slate, 0.12);
-  if (chart->now >= 0 && chart->now < (int)chart->n)
-    draw_moment (cr, &layout, style, chart->points[chart->now].time, style->positive, 0.16);
-  draw_words (cr, chart, &layout, style);
-  draw_days (cr, &layout, style, area);
-  cairo_restore (cr);
+  tf_series_chart_draw_still (cr, chart, style, area);
+  tf_series_chart_draw_over (cr, chart, style, area);
 }
 
 /* -- hits ------------------------------------------------------------------------------------ */

@@ -47,6 +47,13 @@ typedef struct
 double tf_series_chart_cadence (const TfSeriesMoment *points, guint n);
 void tf_series_chart_draw (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
                            TfArea area);
+/** tf_series_chart_draw_still: what the points alone decide, and Joy's band: worth keeping as a picture while a stretch is
+ * brushed or the passage played. tf_series_chart_draw_over: the rest, on top: stretch, moments, words. Both make
+ * tf_series_chart_draw(). */
+void tf_series_chart_draw_still (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
+                                 TfArea area);
+void tf_series_chart_draw_over (cairo_t *cr, const TfSeriesChart *chart, const TfChartStyle *style,
+                                TfArea area);
 /** tf_series_chart_nearest: index of the point nearest in time to @x, -1 without points. */
 int tf_series_chart_nearest (const TfSeriesChart *chart, const TfChartStyle *style, TfArea area,
                              double x);

@@ -123,6 +123,26 @@ take_passages (TfFollowed *self, GPtrArray *rows)
   g_list_store_sort (self->passages, compare_passages, NULL);
 }
 
+/* What was drawn before the passage was read again is not drawn again. */
+static void
+keep_pictures (GListModel *before, const GPtrArray *items)
+{
+  g_autoptr (GHashTable) by_frame = g_hash_table_new_full (g_direct_hash, g_direct_equal, NULL, g_object_unref);
+  for (guint k = 0; k < g_list_model_get_n_items (before); k++)
+    {
+      TfLookItem *item = g_list_model_get_item (before, k);
+      g_hash_table_insert (by_frame, GSIZE_TO_POINTER (tf_look_item_get_spec (item)->frame), item);
+    }
+  for (guint k = 0; k < items->len; k++)
+    {
+      TfLookItem *item = g_ptr_array_index (items, k);
+      TfLookItem *old = g_hash_table_lookup (
+          by_frame, GSIZE_TO_POINTER (tf_look_item_get_spec (item)->frame));
+      if (old != NULL && tf_look_item_is_waiting (item))
+        tf_look_item_share_picture (item, old);
+    }
+}
+
 static void
 take_looks (GListStore *store, TfPassageContent *content)
 {
@@ -135,6 +155,7 @@ take_looks (GListStore *store, TfPassageContent *content)
       g_ptr_array_set_free_func (content->looks, NULL);
       g_ptr_array_set_size (content->looks, 0);
     }
+  keep_pictures (G_LIST_MODEL (store), items);
   g_list_store_splice (store, 0, g_list_model_get_n_items (G_LIST_MODEL (store)), items->pdata,
                        items->len);
 }

@@ -3,6 +3,7 @@
  */
 #include "tf-look-item.h"
 
+#include <math.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-series-chart.h"
@@ -108,6 +109,24 @@ tf_look_item_take_picture (TfLookItem *self, cairo_surface_t *picture, const cha
   g_free (self->why);
   self->look.why = self->why = g_strdup (why);
   g_signal_emit (self, changed_signal, 0);
+}
+
+static gboolean
+is_same_view (const TfView *a, const TfView *b)
+{
+  return fabs (a->zoom - b->zoom) < 1e-9 && fabs (a->centre_lon_deg - b->centre_lon_deg) < 1e-9
+         && fabs (a->centre_lat_deg - b->centre_lat_deg) < 1e-9;
+}
+
+gboolean
+tf_look_item_share_picture (TfLookItem *self, TfLookItem *other)
+{
+  if (other->waiting || other->look.picture == NULL || self->spec->frame != other->spec->frame
+      || g_strcmp0 (self->spec->path, other->spec->path) != 0
+      || !is_same_view (&self->spec->view, &other->spec->view))
+    return FALSE;
+  tf_look_item_take_picture (self, cairo_surface_reference (other->look.picture), NULL);
+  return TRUE;
 }
 
 void

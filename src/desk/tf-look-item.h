@@ -54,6 +54,8 @@ void tf_look_item_copy_look (TfLookItem *item, TfStripLook *copy);
 void tf_look_copy_clear (TfStripLook *copy);
 /** tf_look_item_take_picture: (transfer full) (nullable) @picture; @why: (nullable): there is none */
 void tf_look_item_take_picture (TfLookItem *item, cairo_surface_t *picture, const char *why);
+/** tf_look_item_share_picture: takes over that of @other when it is of the same frame, place and scale. */
+gboolean tf_look_item_share_picture (TfLookItem *item, TfLookItem *other);
 /** tf_look_item_want_picture: another one is to come; the old one stands until then */
 void tf_look_item_want_picture (TfLookItem *item);
 gboolean tf_look_item_is_waiting (TfLookItem *item);

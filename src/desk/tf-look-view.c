@@ -23,7 +23,7 @@ enum
   LARGE_WIDTH = 276
 };
 static const TfColour on_night = { 0.88, 0.89, 0.91, 1 };
-static const double label_share = 0.82, caption_lines = 1.7;
+static const double label_share = 0.82, caption_lines = 1.7, caption_letters = 7.5;
 
 static double
 picture_height (double width)
@@ -54,8 +54,9 @@ measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minim
          int *minimum_baseline, int *natural_baseline)
 {
   TfLookView *self = TF_LOOK_VIEW (widget);
-  int width = self->large ? LARGE_WIDTH : STRIP_WIDTH;
   TfChartStyle style = tf_widget_chart_style (widget, label_share);
+  int width = self->large ? LARGE_WIDTH
+                          : MAX (STRIP_WIDTH, (int)(style.text_pt * caption_letters));
   int height = (int)(picture_height (width) + (self->large ? 0 : style.text_pt * caption_lines));
   *minimum = *natural = orientation == GTK_ORIENTATION_HORIZONTAL ? width : height;
 }

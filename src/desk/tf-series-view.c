@@ -11,9 +11,19 @@
 #include "tf-joy.h"
 #include "tf-widget-style.h"
 
+/* What the kept picture depends on. */
+typedef struct
+{
+  const TfSeriesMoment *points; /* another passage has others: it is told, too */
+  double joy_deg, text_pt, ink;
+  int width, height, scale;
+} Still;
+
 struct _TfSeriesView
 {
   GtkWidget parent;
+  Still still;
+  cairo_surface_t *picture; /* of what is still while one plays or brushes; NULL */
   TfFollowed *followed;
   double drag_x; /* NaN: no drag in hand */
 };
@@ -88,6 +98,40 @@ style_of (TfSeriesView *self)
   return tf_widget_chart_style (GTK_WIDGET (self), label_share);
 }
 
+static gboolean
+is_same (const Still *a, const Still *b)
+{
+  return a->points == b->points && a->width == b->width && a->height == b->height
+         && a->scale == b->scale && fabs (a->text_pt - b->text_pt) < 0.01
+         && fabs (a->ink - b->ink) < 1e-3
+         && (fabs (a->joy_deg - b->joy_deg) < 1e-3 || (isnan (a->joy_deg) && isnan (b->joy_deg)));
+}
+
+/* Borrowed. Its dots take a while to draw, and stay where they are. */
+static cairo_surface_t *
+still_picture (TfSeriesView *self, const TfSeriesChart *chart, const TfChartStyle *style)
+{
+  GtkWidget *widget = GTK_WIDGET (self);
+  Still still = { .points = chart->points,
+                  .joy_deg = chart->joy_deg,
+                  .text_pt = style->text_pt,
+                  .ink = style->ink.r + style->ink.a + 10 * style->ground.r,
+                  .width = gtk_widget_get_width (widget),
+                  .height = gtk_widget_get_height (widget),
+                  .scale = gtk_widget_get_scale_factor (widget) };
+  if (self->picture != NULL && is_same (&still, &self->still))
+    return self->picture;
+  g_clear_pointer (&self->picture, cairo_surface_destroy);
+  self->still = still;
+  self->picture = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, still.width * still.scale,
+                                              still.height * still.scale);
+  cairo_surface_set_device_scale (self->picture, still.scale, still.scale);
+  cairo_t *cr = cairo_create (self->picture);
+  tf_series_chart_draw_still (cr, chart, style, area_of (self));
+  cairo_destroy (cr);
+  return self->picture;
+}
+
 static void
 snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
 {
@@ -99,7 +143,9 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   TfChartStyle style = style_of (self);
   TfSeriesChart chart = tf_followed_chart (self->followed);
   cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
-  tf_series_chart_draw (cr, &chart, &style, area_of (self));
+  cairo_set_source_surface (cr, still_picture (self, &chart, &style), 0, 0);
+  cairo_paint (cr);
+  tf_series_chart_draw_over (cr, &chart, &style, area_of (self));
   cairo_destroy (cr);
 }
 
@@ -111,12 +157,19 @@ changed (TfSeriesView *self)
   gtk_widget_queue_draw (GTK_WIDGET (self));
 }
 
+static void
+passage_changed (TfSeriesView *self)
+{
+  g_clear_pointer (&self->picture, cairo_surface_destroy);
+  changed (self);
+}
+
 void
 tf_series_view_set_followed (TfSeriesView *self, TfFollowed *followed)
 {
   g_return_if_fail (TF_IS_SERIES_VIEW (self) && self->followed == NULL);
   self->followed = g_object_ref (followed);
-  g_signal_connect_object (followed, "passage-changed", G_CALLBACK (changed), self,
+  g_signal_connect_object (followed, "passage-changed", G_CALLBACK (passage_changed), self,
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (followed, "moment-changed", G_CALLBACK (changed), self,
                            G_CONNECT_SWAPPED);
@@ -194,6 +247,7 @@ measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minim
 static void
 dispose (GObject *object)
 {
+  g_clear_pointer (&TF_SERIES_VIEW (object)->picture, cairo_surface_destroy);
   g_clear_object (&TF_SERIES_VIEW (object)->followed);
   G_OBJECT_CLASS (tf_series_view_parent_class)->dispose (object);
 }
