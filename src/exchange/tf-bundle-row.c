@@ -11,6 +11,9 @@
 #include "tf-ledger-outside.h"
 #include "tf-number.h"
 
+#define TF_COLUMNS_ROW TfBundleRow
+#include "tf-columns-table.h"
+
 /* One row of sample.csv, both ways. */
 
 /* -- out --------------------------------------------------------------------------------------- */
@@ -21,12 +24,6 @@ yes_or_nan (int value)
   return value < 0 ? (double)NAN : (double)(value != 0);
 }
 
-#define NUMBER(name, expression)                                                                   \
-  static double name (gconstpointer row)                                                           \
-  {                                                                                                \
-    const TfBundleRow *r = row;                                                                    \
-    return expression;                                                                             \
-  }
 NUMBER (get_picked, r->picked != 0)
 NUMBER (get_region, r->flat.sample.region)
 NUMBER (get_passage, r->flat.sample.passage)
@@ -35,17 +32,18 @@ NUMBER (get_straddles, yes_or_nan (r->flat.sample.straddles))
 NUMBER (get_born, yes_or_nan (r->flat.sample.born))
 NUMBER (get_dipole_sigma, r->flat.sample.axial_dipole_sigma_gauss)
 
+/* clang-format off */
 const TfColumn tf_bundle_columns[] = {
-  { "picked", TF_COLUMN_BOOL, "", "", "meta.code", "whether the sampling rule picked it", 1, get_picked, NULL },
-  { "region_number", TF_COLUMN_INT, "", "", "meta.id.parent", "rows of one region share it", 1, get_region, NULL },
-  { "passage_number", TF_COLUMN_INT, "", "", "meta.id.parent", "rows of one passage share it", 1, get_passage, NULL },
-  { "witnesses_differ", TF_COLUMN_BOOL, "", "", "meta.code.qual", "whether witnesses tell different leaders", 1, get_differ, NULL },
-  { "straddles", TF_COLUMN_BOOL, "", "", "meta.code", "whether the poles lie on both sides of the equator", 1, get_straddles, NULL },
-  { "born_on_disk", TF_COLUMN_BOOL, "", "", "meta.code", "whether the passage began on the visible disk", 1, get_born, NULL },
-  { "axial_dipole_sigma_gauss", TF_COLUMN_NUMBER, "10**-4 T", "1e-4T", "stat.error;phys.magField", "uncertainty of the axial dipole, G", 1,
-    get_dipole_sigma, NULL },
+  AS_BOOL ("picked", "meta.code", "whether the sampling rule picked it", get_picked),
+  AS_INT ("region_number", "meta.id.parent", "rows of one region share it", get_region),
+  AS_INT ("passage_number", "meta.id.parent", "rows of one passage share it", get_passage),
+  AS_BOOL ("witnesses_differ", "meta.code.qual", "whether witnesses tell different leaders", get_differ),
+  AS_BOOL ("straddles", "meta.code", "whether the poles lie on both sides of the equator", get_straddles),
+  AS_BOOL ("born_on_disk", "meta.code", "whether the passage began on the visible disk", get_born),
+  AS_NUMBER ("axial_dipole_sigma_gauss", GAUSS, "stat.error;phys.magField", "uncertainty of the axial dipole, G", get_dipole_sigma),
   { NULL },
 };
+/* clang-format on */
 
 /* -- in ---------------------------------------------------------------------------------------- */
 

@@ -16,6 +16,9 @@ typedef struct
  * rows. English. */
 GArray *tf_facts_new (const GArray *rows, const TfStudy *study, const char *source);
 
+/** tf_facts_new_plain: program, source and the number of rows alone. */
+GArray *tf_facts_new_plain (const char *source, guint n_rows);
+
 /** tf_facts_add: one line more; takes @text. */
 void tf_facts_add (GArray *facts, const char *key, char *text);
 

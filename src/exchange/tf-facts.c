@@ -99,15 +99,37 @@ add_study (GArray *facts, const TfStudy *study)
                         study->divides != NULL ? "as a person set them" : "computed"));
 }
 
+static GArray *
+begin_facts (void)
+{
+  GArray *facts = g_array_new (FALSE, TRUE, sizeof (TfFact));
+  g_array_set_clear_func (facts, clear_fact);
+  tf_facts_add (facts, "program", g_strdup ("Tiltfield " TF_VERSION));
+  return facts;
+}
+
+static void
+end_facts (GArray *facts, const char *source, char *rows)
+{
+  tf_facts_add (facts, "source", g_strdup (source != NULL && *source != '\0' ? source : "not told"));
+  tf_facts_add (facts, "rows", rows);
+}
+
+GArray *
+tf_facts_new_plain (const char *source, guint n_rows)
+{
+  GArray *facts = begin_facts ();
+  end_facts (facts, source, g_strdup_printf ("%u", n_rows));
+  return facts;
+}
+
 GArray *
 tf_facts_new (const GArray *rows, const TfStudy *study, const char *source)
 {
-  GArray *facts = g_array_new (FALSE, TRUE, sizeof (TfFact));
+  GArray *facts = begin_facts ();
   guint hints = 0;
-  g_array_set_clear_func (facts, clear_fact);
   for (guint k = 0; k < rows->len; k++)
     hints += row_at (rows, k)->row->is_hint != 0;
-  tf_facts_add (facts, "program", g_strdup ("Tiltfield " TF_VERSION));
   tf_facts_add (facts, "method", list_values (rows, method_of));
   tf_facts_add (facts, "floor", list_values (rows, floor_of));
   tf_facts_add (facts, "convention",
@@ -117,7 +139,6 @@ tf_facts_new (const GArray *rows, const TfStudy *study, const char *source)
                  "poles' midpoint; flux in Mx, "
                  "field in G, area in millionths of the hemisphere"));
   add_study (facts, study);
-  tf_facts_add (facts, "source", g_strdup (source != NULL && *source != '\0' ? source : "not told"));
-  tf_facts_add (facts, "rows", g_strdup_printf ("%u, of which hints %u", rows->len, hints));
+  end_facts (facts, source, g_strdup_printf ("%u, of which hints %u", rows->len, hints));
   return facts;
 }

@@ -285,7 +285,11 @@ void
 tf_header_set_number (TfHeader *header, const char *keyword, double value)
 {
   g_return_if_fail (keyword != NULL && strlen (keyword) <= KEYWORD);
-  put (header, keyword, tf_number_dup (value), FALSE);
+  char *text = tf_number_dup (value);
+  /* FITS standard 4.0, 4.2.4: an exponent's letter is upper case */
+  if (isfinite (value))
+    g_strdelimit (text, "e", 'E');
+  put (header, keyword, text, FALSE);
 }
 
 void

@@ -4,10 +4,12 @@
 #include <math.h>
 #include <string.h>
 
-#include "tf-columns.h"
 #include "tf-json.h"
 #include "tf-ledger-outside.h"
 #include "tf-mount-wilson.h"
+
+#define TF_COLUMNS_ROW TfExportRow
+#include "tf-columns-table.h"
 
 /* The flat columns. A number that is not there is NaN, a text "". Yes/no and whole numbers come
  * as doubles and are NaN when missing. Values stay in Mx, G and millionths of the hemisphere;
@@ -52,15 +54,7 @@ pole_lon (const TfExportRow *r, gboolean leading)
   return pole != NULL ? pole->carrington_lon_deg : NAN;
 }
 
-#define GETTER(type, name, expression)                                                             \
-  static type name (gconstpointer row)                                                             \
-  {                                                                                                \
-    const TfExportRow *r = row;                                                                    \
-    return expression;                                                                             \
-  }
-#define TEXT(name, expression)   GETTER (char *, name, text_or_empty (expression))
-#define TAKE(name, expression)   GETTER (char *, name, expression)
-#define NUMBER(name, expression) GETTER (double, name, expression)
+#define TEXT(name, expression) GETTER (char *, name, text_or_empty (expression))
 #define M (r->row->measure)
 
 /* clang-format off */
@@ -143,17 +137,6 @@ get_nothing (gconstpointer row)
 }
 
 /* -- the table -------------------------------------------------------------------------------- */
-
-#define DEG "deg", "deg"
-#define MX "10**-8 Wb", "1e-8Wb"
-#define MSH "10**-6", "1e-6"
-#define MEGAMETRE "Mm", "Mm"
-#define GAUSS "10**-4 T", "1e-4T"
-#define NONE "", ""
-#define AS_TEXT(name, ucd, description, text) { name, TF_COLUMN_TEXT, NONE, ucd, description, 1.0, NULL, text }
-#define AS_NUMBER(name, units, ucd, description, number) { name, TF_COLUMN_NUMBER, units, ucd, description, 1.0, number, NULL }
-#define AS_INT(name, ucd, description, number) { name, TF_COLUMN_INT, NONE, ucd, description, 1.0, number, NULL }
-#define AS_BOOL(name, ucd, description, number) { name, TF_COLUMN_BOOL, NONE, ucd, description, 1.0, number, NULL }
 
 const TfColumn tf_columns[] = {
   AS_TEXT ("region", "meta.id;src", "own number of the region", get_region),

@@ -1,12 +1,15 @@
 #!/usr/bin/python3
 # SPDX-License-Identifier: GPL-3.0-or-later
 # SPDX-FileCopyrightText: The Tiltfield developers
-"""tables.py PROGRAM: exported tables read by other people's programs. Prints TAP.
+"""tables.py PROGRAM TILTFIELD_RUN SOURCE: exported tables read by other people's programs. Prints TAP.
+
+PROGRAM writes made rows; the others are what `export --what` writes of a ledger of four demo frames: passages, regions, frames.
 
 stilts votlint (Debian stilts) judges the VOTable, fitsverify the FITS table; astropy.table (python3-astropy 5.2) reads all four back; astropy's
 own readers of VOUnits, FITS units and the UCD1+ word list judge units and UCDs.
 """
 import csv
+import glob
 import json
 import os
 import subprocess
@@ -89,12 +92,11 @@ def differences(name, want, got, text=lambda column, value: value):
     return found
 
 
-def check_votable(folder, want):
-    path = os.path.join(folder, "rows.vot")
-    for name in ("rows", "none"):
-        code, out = run("stilts", "votlint", f"votable={os.path.join(folder, name)}.vot")
-        lines = [line for line in out.splitlines() if line.startswith(("ERROR", "WARNING"))]
-        say(f"stilts votlint finds no error and no warning ({name})", code == 0 and not lines, *lines[:10])
+def judge_votable(path, want, name):
+    """What holds of every VOTable of ours; returns the table as astropy has it."""
+    code, out = run("stilts", "votlint", f"votable={path}")
+    lines = [line for line in out.splitlines() if line.startswith(("ERROR", "WARNING"))]
+    say(f"{name}: stilts votlint finds no error and no warning", code == 0 and not lines, *lines[:10])
     table = parse(path, verify="exception").get_first_table()
     units, ucds = [], []
     for field in table.fields:
@@ -104,32 +106,25 @@ def check_votable(folder, want):
             ucds.append(f"{field.name}: {why}")
         if field.unit is not None and isinstance(field.unit, u.UnrecognizedUnit):
             units.append(f"{field.name}: {field.unit}")
-    say("every UCD is of the UCD1+ list, in a place it may stand", not ucds, *ucds)
-    flux = table.get_field_by_id("flux_unsigned_mx").unit
-    say("every unit of the VOTable parses, and 1 Mx is 1e-8 Wb, 1 G is 1e-4 T",
-        not units and u.Unit(flux).to(u.Wb) == 1e-8 and u.Unit(table.get_field_by_id("floor_gauss").unit).to(u.T) == 1e-4, *units)
-    say("every field has a description", all(field.description for field in table.fields))
+    say(f"{name}: every UCD is of the UCD1+ list, in a place it may stand", not ucds, *ucds)
+    say(f"{name}: every unit of the VOTable parses", not units, *units)
+    say(f"{name}: every field has a description", all(field.description for field in table.fields))
     # astropy takes blanks off both ends of a cell of TABLEDATA, whatever the file has.
     wrong = differences("votable", want, rows_of(Table.read(path, format="votable")), text=lambda column, value: value.strip(" "))
-    say("astropy reads from the VOTable what JSON has, missing values too", not wrong, *wrong[:20])
-    code, out = run("stilts", "tpipe", f"in={path}", "ofmt=csv")
-    got = list(csv.DictReader(out.splitlines()))  # the row with line ends is left out below
-    tilt = [row["axis_tilt_deg"] for row in csv.DictReader(out.splitlines(keepends=True))]
-    say("stilts reads the tilts", code == 0 and len(got) > 0 and tilt == ["4.8", "", "4.8", "4.8"], *tilt)
+    say(f"{name}: astropy reads from the VOTable what JSON has, missing values too", not wrong, *wrong[:20])
+    return table
 
 
-def check_fits(folder, want):
-    for name in ("rows", "none"):
-        path = os.path.join(folder, name + ".fits")
-        code, out = run("fitsverify", "-e", path)
-        say(f"fitsverify finds no error ({name})", code == 0 and "and 0 error(s)" in out, *out.splitlines()[-3:])
-    path = os.path.join(folder, "rows.fits")
+def judge_fits(path, want, name):
+    """What holds of every FITS table of ours; returns header and table as astropy has them."""
+    code, out = run("fitsverify", "-e", path)
+    say(f"{name}: fitsverify finds no error", code == 0 and "and 0 error(s)" in out, *out.splitlines()[-3:])
     with warnings.catch_warnings():
         warnings.simplefilter("error")
         with fits.open(path, checksum=True) as file:
             header = file[1].header.copy()
         table = Table.read(path)
-    say("CHECKSUM and DATASUM are there and right (astropy warns otherwise)", "CHECKSUM" in header and "DATASUM" in header)
+    say(f"{name}: CHECKSUM and DATASUM are there and right (astropy warns otherwise)", "CHECKSUM" in header and "DATASUM" in header)
     units = []
     for k in range(1, header["TFIELDS"] + 1):
         if header.get(f"TUNIT{k}"):
@@ -137,20 +132,18 @@ def check_fits(folder, want):
                 u.Unit(header[f"TUNIT{k}"], format="fits")
             except ValueError as why:
                 units.append(f"{header[f'TTYPE{k}']}: {why}")
-    say("every TUNIT parses, and 1 Mx is 1e-8 Wb, 1 G is 1e-4 T",
-        not units and abs(table["flux_unsigned_mx"].unit.to(u.Wb) / 1e-8 - 1) < 1e-15
-        and abs(table["floor_gauss"].unit.to(u.T) / 1e-4 - 1) < 1e-15, *units)
-    say("the header says that classes are written by their letters' names", "beta-gamma-delta" in str(header["COMMENT"]))
+    say(f"{name}: every TUNIT parses", not units, *units)
     wrong = differences("fits", want, rows_of(table), text=ascii_of)
-    say("astropy reads from the FITS table what JSON has, missing values too", not wrong, *wrong[:20])
+    say(f"{name}: astropy reads from the FITS table what JSON has, missing values too", not wrong, *wrong[:20])
+    return header, table
 
 
-def check_csv(folder, want):
-    path = os.path.join(folder, "rows.csv")
+def judge_csv(path, want, name):
+    """What holds of every CSV table of ours; returns the lines before its header."""
     with open(path, newline="", encoding="utf-8") as file:
         text = file.read()
     comments = [line for line in text.split("\r\n") if line.startswith("# ")]
-    body = text[text.index("\r\nregion,") + 2:]
+    body = text[text.index(f"\r\n{list(want[0])[0]},") + 2:]
     got = []
     for row, model in zip(csv.DictReader(body.splitlines(keepends=True)), want):
         got.append({})
@@ -165,13 +158,82 @@ def check_csv(folder, want):
             else:
                 got[-1][column] = cell
     wrong = differences("csv", want, got)
-    say("Python's csv reads from the CSV what JSON has", not wrong, *wrong[:20])
+    say(f"{name}: Python's csv reads from the CSV what JSON has", not wrong, *wrong[:20])
+    return comments
+
+
+def check_votable(folder, want):
+    path = os.path.join(folder, "rows.vot")
+    table = judge_votable(path, want, "rows")
+    code, out = run("stilts", "votlint", f"votable={os.path.join(folder, 'none.vot')}")
+    say("stilts votlint finds no error in a table without rows", code == 0 and "ERROR" not in out)
+    flux = table.get_field_by_id("flux_unsigned_mx").unit
+    say("1 Mx is 1e-8 Wb and 1 G is 1e-4 T in the VOTable",
+        u.Unit(flux).to(u.Wb) == 1e-8 and u.Unit(table.get_field_by_id("floor_gauss").unit).to(u.T) == 1e-4)
+    code, out = run("stilts", "tpipe", f"in={path}", "ofmt=csv")
+    got = list(csv.DictReader(out.splitlines()))  # the row with line ends is left out below
+    tilt = [row["axis_tilt_deg"] for row in csv.DictReader(out.splitlines(keepends=True))]
+    say("stilts reads the tilts", code == 0 and len(got) > 0 and tilt == ["4.8", "", "4.8", "4.8"], *tilt)
+
+
+def check_fits(folder, want):
+    header, table = judge_fits(os.path.join(folder, "rows.fits"), want, "rows")
+    code, out = run("fitsverify", "-e", os.path.join(folder, "none.fits"))
+    say("fitsverify finds no error in a table without rows", code == 0 and "and 0 error(s)" in out, *out.splitlines()[-3:])
+    say("1 Mx is 1e-8 Wb and 1 G is 1e-4 T in the FITS table",
+        abs(table["flux_unsigned_mx"].unit.to(u.Wb) / 1e-8 - 1) < 1e-15 and abs(table["floor_gauss"].unit.to(u.T) / 1e-4 - 1) < 1e-15)
+    say("the header says that classes are written by their letters' names", "beta-gamma-delta" in str(header["COMMENT"]))
+
+
+def check_csv(folder, want):
+    path = os.path.join(folder, "rows.csv")
+    comments = judge_csv(path, want, "rows")
     say("before the header stand program, method, floor, convention and source",
         all(any(line.startswith(f"# {key}: ") for line in comments) for key in ("program", "method", "floor", "convention", "source")))
     table = Table.read(path, format="ascii.csv", comment="#", encoding="utf-8")
     tilt = [plain(v) for v in table["axis_tilt_deg"]]
     say("astropy reads the CSV: columns, rows, missing tilts",
         len(table) == len(want) and table.colnames == list(want[0]) and tilt == [row["axis_tilt_deg"] for row in want], str(tilt))
+
+
+def check_ledger(folder):
+    """Passages, regions and frames of four demo frames: each format, and the numbers against the table of marks."""
+    program, source = sys.argv[2:4]
+    env = dict(os.environ, XDG_STATE_HOME=os.path.join(folder, "state"))
+    ledger = os.path.join(folder, "a.ledger")
+    frames = sorted(glob.glob(os.path.join(source, "data-demo", "frames", "brindle-201310*-0600.fits")))[:4]
+    tables = {}
+    for words in (["fill", ledger, *frames], ["follow", ledger]):
+        subprocess.run([program, *words], check=True, stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL, env=env)
+    for what in ("marks", "passages", "regions", "frames"):
+        for ending in ("json", "vot", "fits", "csv"):
+            path = os.path.join(folder, f"{what}.{ending}")
+            subprocess.run([program, "export", ledger, path, "--what", what, "--with-hints"], check=True, stderr=subprocess.DEVNULL, env=env)
+        with open(os.path.join(folder, what + ".json"), encoding="utf-8") as file:
+            tables[what] = json.load(file)["rows"]
+        if what == "marks":
+            continue
+        judge_votable(os.path.join(folder, what + ".vot"), tables[what], what)
+        judge_fits(os.path.join(folder, what + ".fits"), tables[what], what)
+        judge_csv(os.path.join(folder, what + ".csv"), tables[what], what)
+    marks = tables["marks"]
+    groups = {}
+    for row in marks:
+        groups.setdefault(row["passage"] or row["mark"], []).append(row)
+    wrong = []
+    for row in tables["passages"]:
+        own = groups.pop(row["passage"] or row["mark"], [])
+        seen = [mark for mark in own if mark["mu"] >= 0.5] or own
+        best = max(seen, key=lambda mark: mark["flux_unsigned_mx"])
+        if (row["mark"], row["hints"], row["first_time"], row["last_time"]) != (
+                best["mark"], len(own), min(m["time"] for m in own), max(m["time"] for m in own)):
+            wrong.append(row["mark"])
+    say("passages: each is told by its mark of greatest flux, with its first and last time; none is missing",
+        not wrong and not groups and max(row["hints"] for row in tables["passages"]) > 1, *wrong[:5])
+    say("regions: they hold every hint once, and no more passages than there are",
+        sum(row["hints"] for row in tables["regions"]) == len(marks) and sum(row["passages"] for row in tables["regions"]) == len(tables["passages"]))
+    say("frames: they hold every hint once, and their names are the files'",
+        sum(row["hints"] for row in tables["frames"]) == len(marks) and {row["frame"] for row in tables["frames"]} == {os.path.basename(f) for f in frames})
 
 
 with tempfile.TemporaryDirectory() as folder:
@@ -186,4 +248,5 @@ with tempfile.TemporaryDirectory() as folder:
         form = {"csv": "ascii.csv", "vot": "votable", "fits": "fits"}[name.split(".")[1]]
         table = Table.read(os.path.join(folder, name), format=form, **({"comment": "#"} if form == "ascii.csv" else {}))
         say(f"an empty table has its columns and no rows ({name})", len(table) == 0 and table.colnames == list(rows[0]))
+    check_ledger(folder)
 print(f"1..{number}")
