@@ -7,58 +7,81 @@ import harness
 from accessible_names import expect_named
 from harness import Failed, Window, fill, scenario
 
-@scenario("an empty window names all that it shows and says what one can do")
+@scenario("an empty window and a new ledger without frames name all that they show and say what one can do")
 def _(given):
-    with Window(given) as w:
+    with tempfile.TemporaryDirectory(prefix="tiltfield-new-") as folder, Window(given) as w:
         expect_named(w, "in the empty window")
         w.wait_text("ledger")
         w.wait_text("frame")
-
-
-@scenario("a new ledger without frames names all that it shows and says how frames come in")
-def _(given):
-    with tempfile.TemporaryDirectory(prefix="tiltfield-new-") as folder, Window(given) as w:
         ledger = os.path.join(folder, "new.ledger")
         w.action("make-ledger", w.glib.Variant("(ss)", (ledger, "T")))
         w.wait_text("no frames yet")
         expect_named(w, "in a ledger without frames")
 
 
-@scenario("with a ledger open every control and drawing has a name, and plate, dial and wings say what they show")
+def tab_round(window):
+    """What has the focus, one after the other, until it comes round."""
+    seen = [window.wait("something to have the focus", window.focused_name)]
+    while len(seen) < 60:
+        window.key("Tab")
+        seen.append(window.wait(f"the focus to leave {seen[-1]}",
+                                lambda: window.focused_name() not in (None, seen[-1]) and window.focused_name()))
+        if seen[-1] == seen[0]:
+            return seen
+    raise Failed(f"the tab key does not come round: {seen}")
+
+
+def said(window, pattern):
+    """What is told once, on the message over the plate, is a live thing that a screen reader hears."""
+    window.wait(f"to be told “{pattern}”", lambda: window.find_anywhere(pattern, "label"))
+
+
+def expect_all_told(window):
+    """Plate, dial and wings say what they show, and say it anew after each deed; deeds and refusals are told in words."""
+    marks, hints = window.counts()
+    window.key("k")
+    window.wait("the plate to count the mark", lambda: window.counts() == (marks + 1, hints - 1))
+    window.wait("the wings to count the mark", lambda: re.match(r"1 mark,", window.description("Wings") or ""))
+    window.wait("the plate to name it", lambda: re.search(r"chosen: 0\d", window.plate()))
+    dial = window.description("Dial")
+    window.key("k")
+    said(window, "This is a mark already.")
+    window.key("period")
+    window.wait("a hint to be chosen", lambda: "chosen: hint" in window.plate())
+    window.wait("the dial to tell the other axis", lambda: window.description("Dial") != dial)
+    window.key("x")
+    window.wait("the plate to count a hint less", lambda: window.counts() == (marks + 1, hints - 2))
+    window.key("ctrl+z")
+    said(window, "Undone: .*")
+    window.wait("the plate to count it again", lambda: window.counts() == (marks + 1, hints - 1))
+    window.key("Escape")
+    window.wait("nothing to be chosen", lambda: "chosen" not in window.plate())
+    window.key("Delete")
+    said(window, "Choose a mark first.")
+
+
+@scenario("with a ledger open all has a name, plate, dial and wings say what they show and change with it, and the tab key reaches all "
+          "and comes round")
 def _(given):
     with tempfile.TemporaryDirectory(prefix="tiltfield-accessible-") as folder:
         ledger = os.path.join(folder, "station.ledger")
         fill(given, ledger)
         with Window(given, [ledger]) as w:
             w.wait("the plate's description", lambda: re.search(r"frame of \d{4}-\d\d-\d\dT.*hints", w.plate()))
+            seen = tab_round(w)
+            missing = [place for place in ("Plate", "Wings", "Undo|Menu", ".*hints.*", "Correct it.*")
+                       if not any(re.fullmatch(place, name, re.S) for name in seen)]
+            if missing:
+                raise Failed(f"the tab key did not reach {missing}: {seen}")
+            w.action("set-person", w.text("Mara"))
+            w.action("focus-plate")
             w.action("next-hint")
             w.wait("the plate to say what is chosen", lambda: "chosen: hint" in w.plate())
             w.wait("the dial's description", lambda: re.search(r"Axis at|No axis", w.description("Dial") or ""))
             w.wait("the wings' description", lambda: re.search(r"\d+ marks?, \d+ hints?|hints? not shown|No marks",
                                                                 w.description("Wings") or ""))
             expect_named(w, "with a ledger open")
-
-
-@scenario("the tab key reaches the plate, the roll and the slip, and comes round again")
-def _(given):
-    with tempfile.TemporaryDirectory(prefix="tiltfield-tab-") as folder:
-        ledger = os.path.join(folder, "station.ledger")
-        fill(given, ledger)
-        with Window(given, [ledger]) as w:
-            w.wait("a frame on the plate", lambda: "frame of" in w.plate())
-            seen = [w.wait("something to have the focus", w.focused_name)]
-            while len(seen) < 60:
-                w.key("Tab")
-                seen.append(w.wait(f"the focus to leave {seen[-1]}",
-                                   lambda: w.focused_name() not in (None, seen[-1]) and w.focused_name()))
-                if seen[-1] == seen[0]:
-                    break
-            if seen[-1] != seen[0]:
-                raise Failed(f"the tab key does not come round: {seen}")
-            missing = [place for place in ("Plate", "Wings", "Undo|Menu", ".*hints.*", "Correct it.*")
-                       if not any(re.fullmatch(place, name, re.S) for name in seen)]
-            if missing:
-                raise Failed(f"the tab key did not reach {missing}: {seen}")
+            expect_all_told(w)
 
 
 @scenario("at 200 % text on 1280 x 720 all that a judgement needs is within the window")

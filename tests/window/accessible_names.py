@@ -3,16 +3,16 @@ import re
 
 from harness import Failed
 
-BAD_NAME = re.compile(r"^(Gtk|Adw|Tf)\w*$|^$")
+BAD_NAME = re.compile(r"^(Gtk|Adw|Tf)\w*$|^$|(^|\w| )_\w")  # of a class, none, with the mark of its letter
 DRAWINGS = {"image", "canvas", "drawing area", "icon"}
 
 
 def unnamed(window):
     """Nodes that can be focused or used, or that draw, whose name is empty or the name of a class."""
     found = []
-    for _, node in window.walk():
+    for _, node in window.walk(shown=True):
         usable = window.has_state(node, "FOCUSABLE") or node.getRoleName() in DRAWINGS
-        if usable and window.is_laid_out(node) and BAD_NAME.match(node.name or ""):
+        if usable and BAD_NAME.search(node.name or ""):
             found.append(f"{node.getRoleName()} “{node.name}” in “{node.parent.name if node.parent else ''}”")
     return found
 

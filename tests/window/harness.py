@@ -7,6 +7,7 @@ program's log. A scenario that fails is tried once more; passing then is reporte
 """
 import argparse
 import ctypes
+import hashlib
 import os
 import re
 import shutil
@@ -67,6 +68,7 @@ class Window:
         self.children = []
         self.program = None
         self.atspi = None
+        self.nodes = {}
         self.log_path = os.path.join(self.base, "log")
 
     # -- beginning and end
@@ -153,6 +155,7 @@ class Window:
         """Runs the program and waits for its window; also used to begin again after stop() or kill()."""
         if words is not None:
             self.words = list(words)
+        self.nodes.clear()  # of the program that ran before
         log = open(self.log_path, "ab")
         self.program = subprocess.Popen([self.given.program, *self.words], env=self.env, stdout=log, stderr=log,
                                         cwd=self.base)
@@ -176,6 +179,11 @@ class Window:
     def kill(self):
         self.program.send_signal(signal.SIGKILL)
         self.program.wait()
+
+    def preferences(self):
+        """What the program keeps for its user."""
+        with open(os.path.join(self.base, "config", "tiltfield", "desk.conf"), encoding="utf-8") as file:
+            return file.read()
 
     # -- waiting
 
@@ -266,19 +274,21 @@ class Window:
         found = self.frames()
         return found[0] if found else None
 
-    def walk(self, top=None, depth=0):
+    def walk(self, top=None, depth=0, shown=False):
+        """All nodes; @shown: without those in pages that were never shown, which saves most of the way."""
         top = top or self.frame()
         yield depth, top
         for k in range(top.childCount):
             child = top.getChildAtIndex(k)
-            if child is not None:
-                yield from self.walk(child, depth + 1)
+            if child is not None and (not shown or self.is_laid_out(child, True)):
+                yield from self.walk(child, depth + 1, shown)
 
     def find(self, name=None, role=None, under=None):
-        """The first node whose name matches the whole pattern and whose role is that; None."""
-        for _, node in self.walk(under):
-            if (name is None or re.fullmatch(name, node.name or "")) and (role is None or node.getRoleName() == role):
-                return node
+        """The first node whose name matches the whole pattern and whose role is that, rather one that is shown; None."""
+        for shown in (True, False):
+            for _, node in self.walk(under, shown=shown):
+                if (name is None or re.fullmatch(name, node.name or "")) and (role is None or node.getRoleName() == role):
+                    return node
         return None
 
     def has_state(self, node, name):
@@ -291,8 +301,15 @@ class Window:
                 return node
         return None
 
+    def known(self, name):
+        """The node of that very name. Looked for once: walking the whole tree takes longer than what is waited for."""
+        node = self.nodes.get(name)
+        if node is None or node.name != name:
+            node = self.nodes[name] = self.find(name)
+        return node
+
     def description(self, name):
-        node = self.find(name)
+        node = self.known(name)
         return node.description if node is not None else None
 
     def plate(self):
@@ -307,25 +324,28 @@ class Window:
         text = node.queryText()
         return text.getText(0, text.characterCount)
 
-    def texts(self):
-        """All names, descriptions and texts that are shown, joined."""
-        found = []
-        for top in self.frames():
-            for _, node in self.walk(top):
-                if not self.is_laid_out(node):
-                    continue
-                found += [node.name or "", node.description or ""]
+    def each_text(self):
+        """The names, descriptions and texts that are shown."""
+        for top in reversed(self.frames()):
+            for _, node in self.walk(top, shown=True):
+                yield node.name or ""
+                yield node.description or ""
                 try:
-                    found.append(self.text_of(node))
+                    yield self.text_of(node)
                 except NotImplementedError:
                     pass
-        return "\n".join(filter(None, found))
+
+    def texts(self):
+        return "\n".join(filter(None, self.each_text()))
+
+    def find_text(self, pattern):
+        return next(filter(None, (re.search(pattern, text, re.I) for text in self.each_text())), None)
 
     def wait_text(self, pattern, limit=LIMIT):
-        return self.wait(f"words like “{pattern}” in the window", lambda: re.search(pattern, self.texts(), re.I), limit)
+        return self.wait(f"words like “{pattern}” in the window", lambda: self.find_text(pattern), limit)
 
     def focused_name(self):
-        node = next((node for _, node in self.walk() if self.has_state(node, "FOCUSED")), None)
+        node = next((node for _, node in self.walk(shown=True) if self.has_state(node, "FOCUSED")), None)
         return node.name if node is not None else None
 
     def press(self, name):
@@ -386,12 +406,13 @@ class Window:
         box = node.queryComponent().getExtents(self.atspi.WINDOW_COORDS)
         return box.x, box.y, box.width, box.height
 
-    def is_laid_out(self, node):
-        """Has a size. GTK 4.8 has no state that tells what is showing, but what was never shown has no size."""
+    def is_laid_out(self, node, otherwise=False):
+        """Has a size. GTK 4.8 has no state that tells what is showing, but what was never shown has no size. @otherwise: of what
+        can have none: the pages of a stack."""
         try:
             _, _, width, height = self.extents(node)
         except NotImplementedError:
-            return False
+            return otherwise
         return width > 0 and height > 0
 
     def on_screen(self, node):
@@ -416,6 +437,14 @@ class Window:
     def click_on(self, node):
         x, y, width, height = self.on_screen(node)
         self.click(x + width / 2, y + height / 2)
+
+    def click_in_dialog(self, node):
+        """On what lies in the dialog that has the keyboard; GTK tells places within the dialog's own window."""
+        x, y, width, height = self.extents(node)
+        id = next(id for id in self.windows() if id != self.id)
+        left, top, outer_width, outer_height = self.geometry(id)
+        _, _, inner_width, inner_height = self.extents(self.frames()[-1])
+        self.click(left + (outer_width - inner_width) // 2 + x + width / 2, top + (outer_height - inner_height) // 2 + y + height / 2)
 
     def drag(self, points, button=1):
         """A hand that draws from point to point of the display; paced, since GTK takes one move a frame."""
@@ -468,13 +497,37 @@ class Window:
 
 
 def fill(given, ledger, frames=None):
-    """A ledger filled from the demo frames by the headless program."""
+    """A ledger filled from the demo frames by the headless program. The same program fills the same frames once for all
+    scenarios; each has a copy of its own."""
     frames = frames or [os.path.join(given.source, "data-demo", "frames")]
+    kept = kept_ledger(given, frames)
+    if kept is not None and os.path.exists(kept):
+        shutil.copyfile(kept, ledger)
+        return
     env = dict(os.environ, XDG_STATE_HOME=os.path.join(os.path.dirname(ledger), "state"))
     done = subprocess.run([given.run, "fill", ledger, *frames], stdout=subprocess.PIPE,
                           stderr=subprocess.STDOUT, text=True, env=env, timeout=120)
     if done.returncode not in (0, 1):  # 1: some frames were refused, as one of the demo's is
         raise Failed(f"fill: {done.returncode}: {done.stdout[-400:]}")
+    if kept is not None and not os.path.exists(ledger + "-wal"):
+        shutil.copyfile(ledger, kept + ".new")
+        os.replace(kept + ".new", kept)
+
+
+def kept_ledger(given, frames):
+    """Where what was filled is kept: by program and frames as they are now. None outside the runner of scenarios."""
+    folder = os.environ.get("TF_WINDOW_FILLED")
+    if folder is None:
+        return None
+    os.makedirs(folder, exist_ok=True)
+    paths = [path for frame in frames for path in
+             ([os.path.join(frame, name) for name in sorted(os.listdir(frame))] if os.path.isdir(frame) else [frame])]
+    program, *rest = (hashlib.sha256(f"{path} {os.stat(path).st_size} {os.stat(path).st_mtime_ns}".encode()).hexdigest()
+                      for path in [given.run, *paths])
+    for name in os.listdir(folder):
+        if not name.startswith(program[:16]):
+            os.remove(os.path.join(folder, name))
+    return os.path.join(folder, program[:16] + "-" + hashlib.sha256("".join(rest).encode()).hexdigest()[:16] + ".ledger")
 
 
 def check(given, ledger):
@@ -525,6 +578,7 @@ def main():
     given = words.parse_args()
     if given.one is not None:
         sys.exit(run_one(given, given.one))
+    os.environ["TF_WINDOW_FILLED"] = os.path.join(given.keep, "filled")
     failed = 0
     print(f"1..{len(scenarios)}", flush=True)
     for number, (sentence, _) in enumerate(scenarios):
