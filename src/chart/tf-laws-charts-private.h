@@ -37,6 +37,7 @@ enum
 
 struct _TfLawsCharts
 {
+  TfLawsCharts *before; /* whose all else is; NULL: its own */
   guint n;
   TfChartRow *rows;
   GArray *hale; /* TfHaleRow, those drawn */

@@ -219,6 +219,21 @@ tf_laws_charts_new (const TfLawsFacts *facts)
 }
 
 TfLawsCharts *
+tf_laws_charts_moved (TfLawsCharts *charts, const TfLawsFacts *facts)
+{
+  g_return_val_if_fail (charts != NULL && facts != NULL, NULL);
+  TfLawsCharts *moved = g_atomic_rc_box_new0 (TfLawsCharts);
+  *moved = *charts;
+  moved->before = tf_laws_charts_ref (charts);
+  moved->fit = find_fit (facts);
+  take_hale (moved, facts);
+  moved->divides = facts->divides != NULL ? tf_divides_ref (facts->divides) : NULL;
+  moved->wings.divides = moved->divides;
+  moved->wings.plain = facts->plain;
+  return moved;
+}
+
+TfLawsCharts *
 tf_laws_charts_ref (TfLawsCharts *charts)
 {
   return g_atomic_rc_box_acquire (charts);
@@ -228,11 +243,16 @@ static void
 charts_clear (gpointer data)
 {
   TfLawsCharts *charts = data;
-  g_free (charts->rows);
-  g_free (charts->dots);
   if (charts->divides != NULL)
     tf_divides_unref (charts->divides);
   g_array_unref (charts->hale);
+  if (charts->before != NULL)
+    {
+      tf_laws_charts_unref (charts->before);
+      return;
+    }
+  g_free (charts->rows);
+  g_free (charts->dots);
   for (int side = 0; side < TF_EMERGENCE_SIDES; side++)
     g_array_unref (charts->ages[side]);
   g_array_unref (charts->lat_bins);

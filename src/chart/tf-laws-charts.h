@@ -39,6 +39,10 @@ typedef struct
 typedef struct _TfLawsCharts TfLawsCharts; /* immutable, reference counted */
 
 TfLawsCharts *tf_laws_charts_new (const TfLawsFacts *facts);
+/** tf_laws_charts_moved: (transfer full): the same while divides move, at once however many rows there
+ * are: shares, slope, divides and plain are taken of @facts; points, bins and tilts stay as in
+ * @charts. */
+TfLawsCharts *tf_laws_charts_moved (TfLawsCharts *charts, const TfLawsFacts *facts);
 TfLawsCharts *tf_laws_charts_ref (TfLawsCharts *charts);
 void tf_laws_charts_unref (TfLawsCharts *charts);
 

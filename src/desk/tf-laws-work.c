@@ -4,11 +4,19 @@
 #include "tf-laws-work.h"
 
 #include "tf-lane.h"
+#include "tf-study-live.h"
 
 enum
 {
-  MANY = 30000 /* rows from which on other choices are not worked out while a divide is in hand */
+  MANY = 30000 /* rows from which on only what a divide changes is worked out while it is in hand */
 };
+
+/* Made of a full answer, moved from question to question; in the lane's thread alone. */
+typedef struct
+{
+  TfLawsAnswer *before;
+  TfStudyLive *live; /* NULL: the study's line cannot be kept */
+} Live;
 
 typedef struct
 {
@@ -17,6 +25,8 @@ typedef struct
   TfLawsAsk ask;
   TfStudyTaken *rows; /* NULL: to be read */
   TfLawsAnswer *quick; /* of this question; NULL: not answered yet */
+  TfLawsAnswer *before; /* of a moving one: the last full answer, from which it moves; NULL */
+  Live *live;           /* the work's own */
 } Question;
 
 struct _TfLawsWork
@@ -31,6 +41,8 @@ struct _TfLawsWork
   guint age;    /* rises when the ledger changes */
   TfStudyTaken *rows;
   Question *to_draw; /* the newest whose draws are not begun */
+  TfLawsAnswer *full; /* the last that was worked out from all rows */
+  Live live;
 };
 
 static void
@@ -42,6 +54,7 @@ question_free (gpointer data)
   tf_study_free (question->study);
   tf_study_taken_unref (question->rows);
   tf_laws_answer_unref (question->quick);
+  tf_laws_answer_unref (question->before);
   g_free (question);
 }
 
@@ -52,7 +65,9 @@ answer_clear (gpointer data)
 {
   TfLawsAnswer *answer = data;
   tf_study_free (answer->study);
-  tf_findings_free (answer->findings);
+  if (answer->before == NULL)
+    tf_findings_free (answer->findings);
+  tf_laws_answer_unref (answer->before);
   tf_laws_charts_unref (answer->charts);
   g_free (answer->words);
   g_free (answer->trouble);
@@ -105,6 +120,55 @@ work_out (const Question *question, TfFindingsDepth depth, TfLedger *ledger)
   return answer;
 }
 
+/* -- while a divide moves ---------------------------------------------------------------------- */
+
+static void
+live_clear (Live *live)
+{
+  g_clear_pointer (&live->live, tf_study_live_free);
+  g_clear_pointer (&live->before, tf_laws_answer_unref);
+}
+
+/* The numbers that a divide moves, all else as in the answer before it was taken in hand. NULL: they
+ * cannot be kept. */
+static TfLawsAnswer *
+move (const Question *question)
+{
+  Live *live = question->live;
+  if (live->before != question->before)
+    {
+      live_clear (live);
+      live->before = tf_laws_answer_ref (question->before);
+      live->live = tf_study_live_new (question->before->study, question->before->findings);
+    }
+  if (live->live == NULL)
+    return NULL;
+  tf_study_live_move (live->live, question->study);
+  TfLawsAnswer *answer = answer_new (question, TF_FINDINGS_QUICK);
+  g_autoptr (TfDivides) computed = tf_divides_new (&question->study->divide);
+  const TfLawsFacts facts = { .hale = tf_study_live_hale (live->live),
+                              .joy = tf_study_live_joy (live->live),
+                              .divides = answer->study->divides != NULL ? answer->study->divides
+                                                                        : computed,
+                              .plain = question->ask.plain };
+  answer->before = tf_laws_answer_ref (question->before);
+  answer->findings = question->before->findings;
+  answer->charts = tf_laws_charts_moved (question->before->charts, &facts);
+  answer->words = tf_study_live_dup_words (live->live, question->study);
+  answer->complete = TRUE;
+  return answer;
+}
+
+/* From what a divide may be moved. */
+static void
+keep_full (TfLawsWork *work, const Question *question, TfLawsAnswer *answer)
+{
+  if (question->age != work->age || answer->findings == NULL || answer->before != NULL)
+    return;
+  tf_laws_answer_unref (work->full);
+  work->full = tf_laws_answer_ref (answer);
+}
+
 /* -- the draws: a thread of their own, so that the next question need not wait for them --------- */
 
 static void draw_next (TfLawsWork *work);
@@ -126,7 +190,10 @@ drawn (GObject *source, GAsyncResult *result, gpointer data)
   const Question *question = g_task_get_task_data (G_TASK (result));
   work->drawing = FALSE;
   if (answer != NULL && question->serial == work->serial)
-    work->answered (answer, work->data);
+    {
+      keep_full (work, question, answer);
+      work->answered (answer, work->data);
+    }
   draw_next (work);
 }
 
@@ -166,6 +233,7 @@ question_copy (const Question *question)
   copy->study = tf_study_copy (question->study);
   copy->rows = question->rows != NULL ? tf_study_taken_ref (question->rows) : NULL;
   copy->quick = NULL;
+  copy->before = NULL;
   return copy;
 }
 
@@ -186,8 +254,13 @@ read_rows (Question *question, TfLedger *ledger)
 static gpointer
 quickly (TfLedger *ledger, gpointer data, GError **error)
 {
+  const Question *asked = data;
   Quick *quick = g_new0 (Quick, 1);
-  quick->question = question_copy (data);
+  quick->question = question_copy (asked);
+  if (asked->before != NULL)
+    quick->answer = move (asked);
+  if (quick->answer != NULL)
+    return quick;
   if (quick->question->rows == NULL)
     quick->answer = read_rows (quick->question, ledger);
   if (quick->answer != NULL)
@@ -223,6 +296,7 @@ begun (GObject *source, GAsyncResult *result, gpointer data)
       /* while a divide moves each answer is shown, the newest as it comes; more is on its way */
       if (quick->question->serial != work->serial)
         quick->answer->complete = FALSE;
+      keep_full (work, quick->question, quick->answer);
       if (quick->question->serial == work->serial || quick->question->ask.moving)
         work->answered (quick->answer, work->data);
       if (quick->question->serial == work->serial && !quick->answer->complete)
@@ -237,6 +311,24 @@ begun (GObject *source, GAsyncResult *result, gpointer data)
   begin_next (work);
 }
 
+/* Whether the last full answer is to the same question but for where the divides stand. */
+static gboolean
+may_move (const TfLawsWork *work, const Question *question)
+{
+  if (work->full == NULL || question->rows == NULL
+      || tf_study_taken_get_n (question->rows) <= MANY
+      || !tf_stretch_is_same (&work->full->stretch, &question->ask.stretch))
+    return FALSE;
+  const TfStudy *full = work->full->study;
+  g_autoptr (TfStudy) still = tf_study_copy (question->study);
+  g_clear_pointer (&still->divides, tf_divides_unref);
+  g_clear_pointer (&still->divides_shown, g_free);
+  still->divides = full->divides != NULL ? tf_divides_ref (full->divides) : NULL;
+  still->divides_shown = g_strdup (full->divides_shown);
+  g_autofree char *before = tf_study_dup_text (full), *now = tf_study_dup_text (still);
+  return g_str_equal (before, now);
+}
+
 static void
 begin_next (TfLawsWork *work)
 {
@@ -245,6 +337,9 @@ begin_next (TfLawsWork *work)
   Question *question = g_steal_pointer (&work->waiting);
   if (work->rows != NULL && tf_study_taken_serves (work->rows, question->study))
     question->rows = tf_study_taken_ref (work->rows);
+  if (question->ask.moving && may_move (work, question))
+    question->before = tf_laws_answer_ref (work->full);
+  question->live = &work->live;
   work->reading = TRUE;
   tf_lane_push (work->lane, NULL, work->cancellable, quickly, question, question_free, quick_free,
                 begun, work);
@@ -275,6 +370,8 @@ tf_laws_work_free (TfLawsWork *work)
   question_free (work->waiting);
   question_free (work->to_draw);
   tf_study_taken_unref (work->rows);
+  live_clear (&work->live);
+  tf_laws_answer_unref (work->full);
   g_free (work);
 }
 
@@ -297,4 +394,5 @@ tf_laws_work_forget (TfLawsWork *work)
   g_return_if_fail (work != NULL);
   work->age++;
   g_clear_pointer (&work->rows, tf_study_taken_unref);
+  g_clear_pointer (&work->full, tf_laws_answer_unref);
 }

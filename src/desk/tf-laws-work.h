@@ -17,7 +17,7 @@
 G_BEGIN_DECLS
 
 /** TfLawsAnswer: immutable, reference counted. */
-typedef struct
+typedef struct _TfLawsAnswer
 {
   TfStudy *study;          /* as asked, with the divides of the answer */
   TfStretch stretch;
@@ -28,6 +28,8 @@ typedef struct
   char *trouble;           /* in words; NULL */
   gboolean empty;          /* no mark (and, when asked for, no hint) is there */
   gboolean complete;       /* nothing more comes to this question */
+  struct _TfLawsAnswer *before; /* of many rows while a divide moves: whose findings these are; only charts
+                                    and words have moved. NULL: its own */
 } TfLawsAnswer;
 TfLawsAnswer *tf_laws_answer_ref (TfLawsAnswer *answer);
 void tf_laws_answer_unref (TfLawsAnswer *answer);

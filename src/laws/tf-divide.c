@@ -178,6 +178,12 @@ tf_divides_get_params (const TfDivides *divides)
   return &divides->params;
 }
 
+int
+tf_divides_get_last (const TfDivides *divides)
+{
+  return divides->last;
+}
+
 guint
 tf_divides_get_moved (const TfDivides *divides, int cycle, int hemisphere, const double **times,
                       const double **lats)

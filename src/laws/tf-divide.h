@@ -49,6 +49,9 @@ TfDivides *tf_divides_with_params (const TfDivides *divides, const TfDivideParam
 TfDivides *tf_divides_ref (TfDivides *divides);
 void tf_divides_unref (TfDivides *divides);
 const TfDivideParams *tf_divides_get_params (const TfDivides *divides);
+/** tf_divides_get_last: the last cycle with a minimum, a provisional one included; there is a divide
+ * at the minimum beginning each from 2 on. */
+int tf_divides_get_last (const TfDivides *divides);
 /** tf_divides_get_moved: points of a moved divide: times (s of TT) and |lat|, borrowed; 0 when it is
  * computed. */
 guint tf_divides_get_moved (const TfDivides *divides, int cycle, int hemisphere,

@@ -23,6 +23,7 @@ typedef struct
 {
   gint8 kind, cycle, side;
   gint8 in_line; /* it has a tilt, a latitude and all else that the line asks but the verdict */
+  gint8 changes; /* its passage does: never a verdict */
 } Row;
 
 typedef struct
@@ -130,20 +131,22 @@ belongs (const TfTally *tally, guint k)
 static void
 take_verdict (TfTally *tally, guint k, const TfVerdict *verdict)
 {
-  tally->rows[k].kind = (gint8)verdict->kind;
+  tally->rows[k].kind = tally->rows[k].changes ? TF_VERDICT_CANNOT_SAY : (gint8)verdict->kind;
   tally->rows[k].cycle = (gint8)verdict->cycle.number;
 }
 
 /* -- making ---------------------------------------------------------------------------------- */
 
 static void
-judge_all (TfTally *tally, const TfDivides *divides)
+judge_all (TfTally *tally, const TfVerdict *verdicts, const TfDivides *divides)
 {
   const TfVerdict keeps = { .kind = TF_VERDICT_KEEPS };
   for (guint k = 0; k < tally->n; k++)
     {
       const TfSampleRow *row = tf_sample_get (tally->sample, k);
-      TfVerdict verdict = tf_verdict_judge (row, divides, &tally->verdict);
+      TfVerdict verdict = verdicts != NULL ? verdicts[k]
+                                           : tf_verdict_judge (row, divides, &tally->verdict);
+      tally->rows[k].changes = g_strcmp0 (verdict.reason, "hale-changes") == 0;
       take_verdict (tally, k, &verdict);
       tally->rows[k].side = row->lat_deg > 0 ? 1 : row->lat_deg < 0 ? -1 : 0;
       tally->rows[k].in_line = tf_joy_uses (row, &keeps, &tally->joy) != FALSE;
@@ -203,8 +206,8 @@ order_ratios (TfTally *tally)
 }
 
 TfTally *
-tf_tally_new (const TfSample *sample, const TfDivides *divides, const TfVerdictParams *verdict,
-              const TfJoyParams *joy)
+tf_tally_new (const TfSample *sample, const TfVerdict *verdicts, const TfDivides *divides,
+              const TfVerdictParams *verdict, const TfJoyParams *joy)
 {
   g_return_val_if_fail (sample != NULL && divides != NULL && verdict != NULL && joy != NULL, NULL);
   TfTally *tally = g_new0 (TfTally, 1);
@@ -217,7 +220,7 @@ tf_tally_new (const TfSample *sample, const TfDivides *divides, const TfVerdictP
   tally->by_time = g_new (guint, tally->n + 1);
   tally->times = g_new (double, tally->n + 1);
   tally->place = g_new (guint, tally->n + 1);
-  judge_all (tally, divides);
+  judge_all (tally, verdicts, divides);
   order_times (tally);
   order_ratios (tally);
   for (guint k = 0; k < tally->n; k++)
@@ -278,6 +281,8 @@ tf_tally_move (TfTally *tally, const TfDivides *divides, int cycle, int hemisphe
         continue;
       TfVerdict verdict
           = tf_verdict_judge (tf_sample_get (tally->sample, k), divides, &tally->verdict);
+      if (tally->rows[k].changes)
+        verdict.kind = TF_VERDICT_CANNOT_SAY;
       if (verdict.kind == (TfVerdictKind)tally->rows[k].kind
           && verdict.cycle.number == tally->rows[k].cycle)
         continue;

@@ -20,8 +20,10 @@ G_BEGIN_DECLS
 
 typedef struct _TfTally TfTally;
 
-/** tf_tally_new: @sample must live as long as it. */
-TfTally *tf_tally_new (const TfSample *sample, const TfDivides *divides,
+/** tf_tally_new: @sample must live as long as it. @verdicts: (nullable): those of @sample under
+ * @divides: a pick whose passage changes cannot be said under any of them (tf-held.h). NULL: each
+ * row speaks for itself. */
+TfTally *tf_tally_new (const TfSample *sample, const TfVerdict *verdicts, const TfDivides *divides,
                        const TfVerdictParams *verdict, const TfJoyParams *joy);
 void tf_tally_free (TfTally *tally);
 /** tf_tally_offers: whether the line of that form and estimator is kept. */

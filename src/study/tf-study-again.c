@@ -25,6 +25,19 @@ tf_stretch_is_all (const TfStretch *s)
   return isnan (s->from_year) && isnan (s->to_year) && isnan (s->low_deg) && isnan (s->high_deg);
 }
 
+static gboolean
+is_same (double a, double b)
+{
+  return (isnan (a) && isnan (b)) || (a <= b && a >= b);
+}
+
+gboolean
+tf_stretch_is_same (const TfStretch *a, const TfStretch *b)
+{
+  return is_same (a->from_year, b->from_year) && is_same (a->to_year, b->to_year)
+         && is_same (a->low_deg, b->low_deg) && is_same (a->high_deg, b->high_deg);
+}
+
 static gpointer
 copy_condition (gconstpointer condition, gpointer data)
 {

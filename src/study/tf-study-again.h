@@ -17,6 +17,7 @@ typedef struct
   double low_deg, high_deg;
 } TfStretch;
 gboolean tf_stretch_is_all (const TfStretch *stretch);
+gboolean tf_stretch_is_same (const TfStretch *a, const TfStretch *b);
 
 /** tf_study_copy: (transfer full) */
 TfStudy *tf_study_copy (const TfStudy *study);

@@ -80,15 +80,25 @@ static void
 note_divides (TfNotes *cautions, const TfStudy *study)
 {
   g_autoptr (GString) names = g_string_new (NULL);
-  for (const TfCycle *c = tf_cycles; study->divides != NULL && c->number != 0; c++)
+  int last = study->divides != NULL ? tf_divides_get_last (study->divides) : 0;
+  for (int cycle = 2; cycle <= last; cycle++)
     for (int side = 1; side >= -1; side -= 2)
-      if (tf_divides_is_moved (study->divides, c->number, side))
-        g_string_append_printf (names, "%s%d %s", names->len > 0 ? ", " : "", c->number,
+      if (tf_divides_is_moved (study->divides, cycle, side))
+        g_string_append_printf (names, "%s%d %s", names->len > 0 ? ", " : "", cycle,
                                 side > 0 ? "N" : "S");
   if (names->len > 0)
     tf_notes_add (cautions, "divides-moved", "s", names->str);
   if (study->divides_shown != NULL)
     tf_notes_add (cautions, "divides-shown", "s", study->divides_shown);
+}
+
+void
+tf_study_copy_cautions (const TfNotes *before, const TfStudy *study, TfNotes *out)
+{
+  for (guint k = 0; k < tf_notes_get_n (before); k++)
+    if (!g_str_has_prefix (tf_note_get_code (tf_notes_get (before, k)), "divides-"))
+      tf_notes_add_copy (out, tf_notes_get (before, k));
+  note_divides (out, study);
 }
 
 void

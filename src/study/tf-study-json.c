@@ -82,7 +82,7 @@ build_sample (JsonBuilder *builder, const TfFindings *findings, const TfStudy *s
   tf_json_string (builder, "rule", tf_sampling_names[study->sampling.rule]);
   tf_json_int (builder, "picks", tf_sample_get_n (findings->sample));
   tf_json_int (builder, "peak_not_bracketed", findings->sampling.not_bracketed);
-  tf_json_int (builder, "regions", tf_sample_count_regions (findings->sample));
+  tf_json_int (builder, "regions", findings->regions);
   tf_json_int (builder, "passages", tf_sample_count_passages (findings->sample));
   tf_json_int (builder, "marks", findings->n_marks);
   tf_json_int (builder, "hints", findings->n_hints);

@@ -45,6 +45,8 @@ TfSample *tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const T
                           TfFindings *findings);
 /** tf_study_add_cautions: what must be said beside the numbers. */
 void tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows);
+/** tf_study_copy_cautions: those of the same findings under other divides. */
+void tf_study_copy_cautions (const TfNotes *before, const TfStudy *study, TfNotes *out);
 /** tf_study_read_rows: (transfer full): what the study takes of a ledger; an error when that is
  * nothing. */
 GPtrArray *

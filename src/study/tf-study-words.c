@@ -122,7 +122,7 @@ tf_findings_dup_words (const TfFindings *findings, const TfStudy *study)
   g_string_append_printf (
       out, _ ("Sample: %u picks, %s, from %u marks and %u hints of %u regions.\n"),
       tf_sample_get_n (findings->sample), _ (rules[study->sampling.rule]), findings->n_marks,
-      findings->n_hints, tf_sample_count_regions (findings->sample));
+      findings->n_hints, findings->regions);
   if (isfinite (findings->even_floor_gauss))
     g_string_append_printf (out,
                             _ ("Marks within %.0f° of the central meridian, even floor %.1f G.\n"),

@@ -273,6 +273,7 @@ tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledg
   TfFindings *findings = findings_new (floor);
   findings->every = tf_study_marks (study, rows, findings);
   findings->sample = tf_study_picks (study, rows, findings->every, findings);
+  findings->regions = tf_sample_count_regions (findings->sample);
   count_marks (findings, rows);
   judge (findings, study);
   findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);

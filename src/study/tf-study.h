@@ -123,6 +123,7 @@ const char *tf_what_if_missing (const char *missing);
 typedef struct
 {
   TfSample *sample;    /* the picks */
+  guint regions;       /* of them, each once */
   TfVerdict *verdicts; /* one a sample row */
   TfHeld *held;        /* likewise: how far the pick's passage holds to its verdict; NULL when every mark is a pick */
   GHashTable *changing; /* passages in which too few marks agree */

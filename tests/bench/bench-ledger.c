@@ -115,8 +115,8 @@ do_begin (Bench *bench)
       tf_sample_add (bench->sample, &row);
     }
   double begun = now_ms ();
-  bench->tally = tf_tally_new (bench->sample, bench->divides, &bench->study->verdict,
-                               &bench->study->joy);
+  bench->tally = tf_tally_new (bench->sample, NULL, bench->divides,
+                               &bench->study->verdict, &bench->study->joy);
   return now_ms () - begun;
 }
 

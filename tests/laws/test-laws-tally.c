@@ -81,7 +81,7 @@ test_moves (void)
       if (!tf_tally_offers (&joy))
         continue;
       TfDivides *divides = test_laws_divides ();
-      g_autoptr (TfTally) tally = tf_tally_new (sample, divides, &verdict, &joy);
+      g_autoptr (TfTally) tally = tf_tally_new (sample, NULL, divides, &verdict, &joy);
       compare (tally, sample, divides, &verdict, &hale, &joy);
       guint changed = 0;
       for (int move = 0; move < 12; move++)
@@ -101,6 +101,42 @@ test_moves (void)
   g_rand_free (random);
 }
 
+/* A pick whose passage changes has no verdict wherever the divide stands. */
+static void
+test_changing (void)
+{
+  g_autoptr (TfSample) sample = tf_sample_new ();
+  for (guint k = 0; k < 3; k++)
+    {
+      TfSampleRow row = test_laws_row (20, 1);
+      row.time = test_laws_month (24, 0);
+      row.region = row.passage = k + 1;
+      tf_sample_add (sample, &row);
+    }
+  g_autoptr (TfDivides) divides = test_laws_divides ();
+  TfVerdictParams params = test_laws_verdict_params ();
+  TfVerdict verdicts[3];
+  for (guint k = 0; k < 3; k++)
+    verdicts[k] = tf_verdict_judge (tf_sample_get (sample, k), divides, &params);
+  verdicts[1].kind = TF_VERDICT_CANNOT_SAY;
+  verdicts[1].reason = "hale-changes";
+  TfJoyParams joy;
+  tf_options_reset (tf_joy_options, &joy);
+  g_autoptr (TfTally) tally = tf_tally_new (sample, verdicts, divides, &params, &joy);
+  for (int lat = 5; lat <= 35; lat += 30)
+    {
+      TfTime times[] = { test_laws_month (24, -24), test_laws_month (24, 18) };
+      const double lats[] = { lat, lat };
+      g_autoptr (TfDivides) moved = tf_divides_with (divides, 24, 1, times, lats, 2);
+      tf_tally_move (tally, moved, 24, 1);
+      g_autoptr (GArray) table = tf_tally_hale (tally, 0.95);
+      const TfHaleRow *all = &g_array_index (table, TfHaleRow, table->len - 1);
+      g_assert_cmpuint (all->n, ==, 2);
+      g_assert_cmpuint (all->breaks, ==, lat < 20 ? 2 : 0);
+      g_assert_cmpuint (all->cannot_say, ==, 1);
+    }
+}
+
 static void
 test_nothing (void)
 {
@@ -109,7 +145,7 @@ test_nothing (void)
   TfVerdictParams verdict = test_laws_verdict_params ();
   TfJoyParams joy;
   tf_options_reset (tf_joy_options, &joy);
-  g_autoptr (TfTally) tally = tf_tally_new (sample, divides, &verdict, &joy);
+  g_autoptr (TfTally) tally = tf_tally_new (sample, NULL, divides, &verdict, &joy);
   g_assert_cmpuint (tf_tally_move (tally, divides, 24, 1), ==, 0);
   g_autoptr (GArray) table = tf_tally_hale (tally, 0.95);
   g_assert_cmpuint (table->len, ==, 1);
@@ -121,5 +157,6 @@ void
 test_laws_add_tally (void)
 {
   g_test_add_func ("/laws/tally/after-any-moves-as-if-judged-anew", test_moves);
+  g_test_add_func ("/laws/tally/what-changes-in-its-passage-has-no-verdict", test_changing);
   g_test_add_func ("/laws/tally/nothing-to-count", test_nothing);
 }

@@ -159,6 +159,7 @@ main (int argc, char **argv)
   test_study_add_row ();
   test_study_add_series ();
   test_study_add_ledger ();
+  test_study_add_live ();
   test_study_add_pair ();
   test_study_add_sample ();
   test_study_add_shift ();

@@ -6,6 +6,7 @@
 #include "tf-study.h"
 
 void test_study_add_ledger (void);
+void test_study_add_live (void);
 void test_study_add_pair (void);
 void test_study_add_file (void);
 void test_study_add_row (void);
