@@ -200,6 +200,16 @@ check_inside (TfLedger *ledger, TfNotes *findings, GError **error)
   return ok;
 }
 
+static gboolean
+check_packs (TfLedger *ledger, TfNotes *findings, GError **error)
+{
+  for (int pack = 0; pack < TF_PACKS; pack++)
+    if (tf_pack_is_there (ledger, (TfPack)pack)
+        && !tf_pack_check (ledger, (TfPack)pack, findings, error))
+      return FALSE;
+  return TRUE;
+}
+
 gboolean
 tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error)
 {
@@ -210,5 +220,5 @@ tf_ledger_check (TfLedger *ledger, TfNotes *findings, GError **error)
   tf_ledger_rollback (ledger);
   return ok && tf_check_schema (ledger, findings, error)
          && tf_check_projections (ledger, findings, error)
-         && (!tf_pack_is_there (ledger) || tf_pack_check (ledger, findings, error));
+         && check_packs (ledger, findings, error);
 }

@@ -172,14 +172,19 @@ tf_method_key (TfLedger *ledger, const char *text, GError **error)
   return sqlite3_last_insert_rowid (ledger->db);
 }
 
+char *
+tf_measure_dup_cid (const char *frame_cid, const char *method, const char *outline_text)
+{
+  return tf_content_id ("tiltfield measure 1", frame_cid, method, outline_text, NULL);
+}
+
 gint64
 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method,
                 const char *outline_text, const TfMeasure *measure, const char *program,
                 char **cid_out, GError **error)
 {
   gint64 method_key = tf_method_key (ledger, method, error);
-  g_autofree char *cid
-      = tf_content_id ("tiltfield measure 1", frame_cid, method, outline_text, NULL);
+  g_autofree char *cid = tf_measure_dup_cid (frame_cid, method, outline_text);
   if (method_key == 0)
     return 0;
   gint64 key = tf_value (ledger, NULL, 0, "SELECT id FROM measure WHERE cid = ?1", "h", cid);
@@ -188,7 +193,8 @@ tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const cha
       if (!insert (ledger, frame, method_key, cid, measure, program, error))
         return 0;
       key = sqlite3_last_insert_rowid (ledger->db);
-      if (!tf_digest_store (ledger, "measure", key, error))
+      if (!tf_digest_store (ledger, "measure", key, error)
+          || (measure->floor_kind == TF_FLOOR_EVEN && !tf_pack_spoil_measures (ledger, frame, error)))
         return 0;
     }
   if (cid_out != NULL)
@@ -215,10 +221,14 @@ tf_ledger_has_measure (TfLedger *ledger, gint64 frame, const TfOutline *outline,
   g_autofree char *frame_id = frame_cid (ledger, frame, NULL);
   g_autofree char *text = tf_outline_dup_text (outline);
   g_autofree char *cid = frame_id != NULL
-                             ? tf_content_id ("tiltfield measure 1", frame_id, method, text, NULL)
+                             ? tf_measure_dup_cid (frame_id, method, text)
                              : NULL;
-  if (cid == NULL)
-    return FALSE;
+  return cid != NULL && tf_measure_find (ledger, cid, measure);
+}
+
+gboolean
+tf_measure_find (TfLedger *ledger, const char *cid, TfMeasure *measure)
+{
   g_autofree char *names = tf_measure_dup_columns ("e.");
   g_autofree char *sql = g_strconcat ("SELECT ", names, " FROM measure e WHERE e.cid = ?1", NULL);
   g_autoptr (sqlite3_stmt) query = tf_query (ledger, NULL, sql, "h", cid);

@@ -189,13 +189,21 @@ read_rows (TfLedger *ledger, GArray *points, GError **error)
   return more == 0;
 }
 
+static void
+take_block (gconstpointer items, guint n, gpointer points)
+{
+  g_array_append_vals (points, items, n);
+}
+
 GArray *
 tf_ledger_points (TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
   g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (TfPoint));
-  gboolean packed = tf_pack_is_there (ledger); /* not in an older one that cannot be written */
-  if (!(packed ? tf_pack_read (ledger, points, error) : read_rows (ledger, points, error)))
+  /* not in an older one that cannot be written */
+  gboolean packed = tf_pack_is_there (ledger, TF_PACK_POINT);
+  if (!(packed ? tf_pack_each (ledger, TF_PACK_POINT, take_block, points, error)
+               : read_rows (ledger, points, error)))
     return NULL;
   sort_points (points);
   return g_steal_pointer (&points);

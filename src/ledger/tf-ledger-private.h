@@ -19,7 +19,7 @@
 G_BEGIN_DECLS
 
 #define TF_LEDGER_APPLICATION 0x54466c64 /* "TFld" */
-#define TF_LEDGER_VERSION     9
+#define TF_LEDGER_VERSION     10
 #define TF_ID_HEX             32 /* digits of a UUID */
 #define TF_CID_HEX            64 /* digits of a content id or hash */
 
@@ -193,6 +193,9 @@ gint64 tf_method_key (TfLedger *ledger, const char *text, GError **error);
 gint64 tf_measure_put (TfLedger *ledger, gint64 frame, const char *frame_cid, const char *method,
                        const char *outline_text, const TfMeasure *measure, const char *program,
                        char **cid, GError **error);
+/* The content id of a measure; the measure of that id, if it is there. */
+char *tf_measure_dup_cid (const char *frame_cid, const char *method, const char *outline_text);
+gboolean tf_measure_find (TfLedger *ledger, const char *cid, TfMeasure *measure);
 /* Reads the columns of tf_measure_columns_sql beginning at @column. */
 void tf_measure_from_row (TfMeasure *measure, sqlite3_stmt *query, int column);
 char *tf_measure_dup_columns (const char *alias); /* "e.time, e.field_used, ..." */
@@ -215,17 +218,34 @@ gboolean tf_complexity_from_row (TfComplexityRow *row, sqlite3_stmt *query, int 
 /* -- tf-ledger-points.c, tf-ledger-pack.c
  * -------------------------------------------------------------- */
 void tf_point_read (TfPoint *point, sqlite3_stmt *query);
-/* The block that holds a point (kind as point.hint), or all of a frame's hints, of an outside table's
- * rows, of the ledger, is to be filled anew before the commit. */
+/* The tables that hold rows in blocks. */
+typedef enum
+{
+  TF_PACK_POINT, /* of TfPoint */
+  TF_PACK_BRIEF, /* of TfBrief */
+  TF_PACKS
+} TfPack;
+enum
+{
+  TF_BRIEF_BLOCK = 64 /* marks or hints of a block of briefs */
+};
+/* The blocks that hold a mark or hint (kind as point.hint), or all of a frame's hints, of an outside
+ * table's rows, of the ledger, are to be filled anew before the commit; of measures: briefs alone. */
 gboolean tf_pack_spoil (TfLedger *ledger, int kind, gint64 mark, GError **error);
 gboolean tf_pack_spoil_frame (TfLedger *ledger, gint64 frame, GError **error);
+gboolean tf_pack_spoil_measures (TfLedger *ledger, gint64 frame, GError **error);
 gboolean tf_pack_spoil_outside (TfLedger *ledger, gint64 outside, GError **error);
 gboolean tf_pack_spoil_all (TfLedger *ledger, GError **error);
 gboolean tf_pack_fill (TfLedger *ledger, GError **error);
-gboolean tf_pack_is_there (TfLedger *ledger);
-/* Appends all points, in no order. */
-gboolean tf_pack_read (TfLedger *ledger, GArray *points, GError **error);
-gboolean tf_pack_check (TfLedger *ledger, TfNotes *findings, GError **error);
+gboolean tf_pack_is_there (TfLedger *ledger, TfPack pack);
+/* Calls @func for each block's items, in the order of kinds and keys. */
+typedef void (*TfPackFunc) (gconstpointer items, guint n, gpointer user);
+gboolean tf_pack_each (TfLedger *ledger, TfPack pack, TfPackFunc func, gpointer user, GError **error);
+gboolean tf_pack_check (TfLedger *ledger, TfPack pack, TfNotes *findings, GError **error);
+/* Briefs of the marks (@kind 0) or open hints (1) with keys from @first to before @end: TfBrief, each
+ * mark's own first. */
+gboolean tf_brief_append (TfLedger *ledger, int kind, gint64 first, gint64 end, GArray *items,
+                          GError **error);
 
 /* -- tf-ledger-info.c
  * ------------------------------------------------------------------------------ */

@@ -56,7 +56,7 @@
  *     settle        any                    later   names the heads it settles in `after`
  *
  *   LOCAL: setting (ledger id, letter), draft (strokes between keeps), place. They do not travel.
- *   DERIVED: point (the wings), kept in the transaction that changes a mark or hint; passage with member, linked, tied and
+ *   DERIVED: point (the wings) and the blocks pack and brief, kept in the transaction that changes a mark or hint; passage with member, linked, tied and
  *   passage_return, which follow makes from points and ties (content id of method, vantage and first sighting).
  *
  * Several people working apart: each copy of the file writes under its own replica (tf-ledger-replica.c), acts are merged by
@@ -229,9 +229,13 @@ static const char projection_8[]
 static const char pack_sql[] = "CREATE TABLE pack (id INTEGER PRIMARY KEY, data BLOB) STRICT;"
                                "CREATE INDEX pack_spoilt ON pack (id) WHERE data IS NULL;";
 
+/* Of what studies ask of marks and hints (tf-ledger-brief.h): likewise. */
+static const char brief_sql[] = "CREATE TABLE brief (id INTEGER PRIMARY KEY, data BLOB) STRICT;"
+                                "CREATE INDEX brief_spoilt ON brief (id) WHERE data IS NULL;";
+
 const char *const tf_ledger_projections[]
     = { projection_1, projection_2, projection_3, projection_4, projection_5,
-        projection_6, projection_7, projection_8, pack_sql,     NULL };
+        projection_6, projection_7, projection_8, pack_sql,     brief_sql,    NULL };
 
 #define LOCAL_SQL                                                                                  \
   "CREATE TABLE draft (frame INTEGER NOT NULL REFERENCES frame (id), "                             \
@@ -435,6 +439,11 @@ static const char *const version_8[] = { projection_8, NULL };
 
 static const char *const version_9[] = { pack_sql, NULL };
 
+static const char brief_frame_sql[]
+    = "CREATE INDEX frame_brief ON frame (id, instrument, kind, simulated);";
+
+static const char *const version_10[] = { brief_sql, brief_frame_sql, NULL };
+
 const TfMigration tf_ledger_migrations[] = {
   { 1, version_1 },
   { 2, version_2 },
@@ -445,5 +454,6 @@ const TfMigration tf_ledger_migrations[] = {
   { 7, version_7 },
   { 8, version_8 },
   { 9, version_9 },
+  { 10, version_10 },
   { 0, NULL },
 };

@@ -279,7 +279,7 @@ gboolean
 tf_ledger_commit (TfLedger *ledger, GError **error)
 {
   if (ledger->bundle_as != NULL
-      || ((!tf_pack_is_there (ledger) || tf_pack_fill (ledger, error))
+      || ((!tf_pack_is_there (ledger, TF_PACK_BRIEF) || tf_pack_fill (ledger, error))
           && tf_run (ledger, error, "COMMIT", "")))
     {
       ledger->replica_is_new = ledger->replica_is_new && ledger->bundle_as != NULL;

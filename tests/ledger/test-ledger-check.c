@@ -114,6 +114,8 @@ static const Tampering tamperings[] = {
   { "a-name", "UPDATE person SET name = 'west' WHERE id = 1", "check-projection" },
   { "a-point", "UPDATE point SET flux_mx = flux_mx * 2 WHERE mark = 2", "check-points" },
   { "a-packed-point", "UPDATE pack SET data = CAST (substr (data, 1, 40) || x'01' || substr (data, 42) AS BLOB)", "check-points" },
+  { "a-brief", "UPDATE brief SET data = CAST (substr (data, 1, 60) || x'01' || substr (data, 62) AS BLOB)", "check-points" },
+  { "a-brief-gone", "DELETE FROM brief", "check-points" },
   { "a-pack-gone", "DELETE FROM pack", "check-points" },
   { "a-point-gone", "DELETE FROM point WHERE hint = 1 AND mark = 5", "check-points" },
   { "a-point-more",

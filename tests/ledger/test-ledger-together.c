@@ -141,7 +141,7 @@ test_older (Fixture *f, gconstpointer data)
   g_clear_pointer (&f->ledger, tf_ledger_close);
   fixture_sql (f->path,
                "DROP VIEW marks; DROP VIEW hints; CREATE VIEW marks AS SELECT 1; CREATE VIEW hints "
-               "AS SELECT 1; DROP TABLE scale; DROP TABLE fact; DROP TABLE pack; ALTER TABLE deed DROP COLUMN "
+               "AS SELECT 1; DROP TABLE scale; DROP TABLE fact; DROP TABLE pack; DROP TABLE brief; DROP INDEX frame_brief; ALTER TABLE deed DROP COLUMN "
                "bundle; PRAGMA user_version = 6");
   fixture_reopen (f);
   g_assert_cmpstr (tf_note_get_code (tf_notes_get (tf_ledger_get_notices (f->ledger), 0)), ==,
