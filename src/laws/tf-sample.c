@@ -5,6 +5,8 @@
 
 #include <math.h>
 
+#include "tf-distinct.h"
+
 struct _TfSample
 {
   GArray *rows;
@@ -13,8 +15,14 @@ struct _TfSample
 TfSample *
 tf_sample_new (void)
 {
+  return tf_sample_new_sized (0);
+}
+
+TfSample *
+tf_sample_new_sized (guint n)
+{
   TfSample *sample = g_new0 (TfSample, 1);
-  sample->rows = g_array_new (FALSE, FALSE, sizeof (TfSampleRow));
+  sample->rows = g_array_sized_new (FALSE, FALSE, sizeof (TfSampleRow), n);
   return sample;
 }
 
@@ -84,34 +92,13 @@ tf_sample_get (const TfSample *sample, guint k)
   return &g_array_index (sample->rows, TfSampleRow, k);
 }
 
-/* Sorts by one byte of each number, the least first: @to has room for @n. */
-static void
-sort_by_byte (const guint32 *from, guint32 *to, guint n, guint shift)
-{
-  guint start[257] = { 0 };
-  for (guint k = 0; k < n; k++)
-    start[((from[k] >> shift) & 255u) + 1]++;
-  for (guint byte = 0; byte < 256; byte++)
-    start[byte + 1] += start[byte];
-  for (guint k = 0; k < n; k++)
-    to[start[(from[k] >> shift) & 255u]++] = from[k];
-}
-
 guint
 tf_count_distinct (const guint32 *ids, guint n)
 {
-  guint count = 0;
-  g_autofree guint32 *sorted = g_new (guint32, n + 1), *other = g_new (guint32, n + 1);
+  g_autoptr (TfDistinct) distinct = tf_distinct_new (n);
   for (guint k = 0; k < n; k++)
-    sorted[k] = ids[k];
-  for (guint shift = 0; n > 0 && shift < 32; shift += 16)
-    {
-      sort_by_byte (sorted, other, n, shift);
-      sort_by_byte (other, sorted, n, shift + 8);
-    }
-  for (guint k = 0; k < n; k++)
-    count += k == 0 || sorted[k] != sorted[k - 1];
-  return count;
+    tf_distinct_add (distinct, ids[k]);
+  return tf_distinct_get_n (distinct);
 }
 
 /* How many different numbers stand at @offset of the rows. */

@@ -56,6 +56,8 @@ typedef struct
 typedef struct _TfSample TfSample;
 
 TfSample *tf_sample_new (void);
+/** tf_sample_new_sized: with room for @n rows. */
+TfSample *tf_sample_new_sized (guint n);
 void tf_sample_free (TfSample *sample);
 /** tf_sample_row_init: every quantity "absent". */
 void tf_sample_row_init (TfSampleRow *row);

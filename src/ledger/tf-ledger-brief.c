@@ -417,6 +417,17 @@ tf_ledger_brief_frames (TfLedger *ledger, GError **error)
   return more == 0 ? g_steal_pointer (&frames) : NULL;
 }
 
+TfFrameNoise
+tf_frame_noise (const TfFrameRow *row)
+{
+  const TfFrameInfo *info = row->info;
+  return (TfFrameNoise){ .instrument = g_intern_string (info->instrument),
+                         .noise_gauss = row->noise_gauss,
+                         .model_map = info->kind == TF_KIND_MODEL_MAP,
+                         .known_unit = *info->unit != '\0',
+                         .as_is = info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&info->geometry) };
+}
+
 GArray *
 tf_ledger_noises (TfLedger *ledger, GError **error)
 {

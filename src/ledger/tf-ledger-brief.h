@@ -71,6 +71,8 @@ typedef struct
   gint8 model_map, known_unit;
   gint8 as_is;            /* the field needs no 1/mu: a radial product, a map */
 } TfFrameNoise;
+/** tf_frame_noise: of a frame that was read. */
+TfFrameNoise tf_frame_noise (const TfFrameRow *row);
 /** tf_ledger_noises: (element-type TfFrameNoise) those of all frames with a noise. */
 GArray *tf_ledger_noises (TfLedger *ledger, GError **error);
 

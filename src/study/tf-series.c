@@ -6,6 +6,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-ledger-brief.h"
 #include "tf-ledger-follow.h"
 #include "tf-series-private.h"
 
@@ -45,7 +46,8 @@ flags_of (const TfRow *row, double floor_gauss, const TfSeriesParams *params)
     flags |= TF_POINT_LIMB;
   if (m->mu < NEAR_LIMB_MU)
     flags |= TF_POINT_NEAR_LIMB;
-  if (!tf_study_has_floor (row, floor_gauss))
+  const TfStudyFact fact = tf_study_fact_of_row (row);
+  if (!tf_study_fact_has_floor (&fact, floor_gauss))
     flags |= TF_POINT_OTHER_FLOOR;
   if (row->is_hint)
     flags |= TF_POINT_HINT;
@@ -137,18 +139,20 @@ tf_series_floor (TfLedger *ledger, gint64 passage, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NAN);
   g_autoptr (GPtrArray) rows = tf_ledger_passage_rows (ledger, passage, FALSE, FALSE, error);
-  g_autoptr (GPtrArray) frames = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_frame_row_free);
+  g_autoptr (GArray) noises = g_array_new (FALSE, FALSE, sizeof (TfFrameNoise));
   g_autoptr (GHashTable) seen = g_hash_table_new (g_direct_hash, g_direct_equal);
   for (guint k = 0; rows != NULL && k < rows->len; k++)
     {
       gint64 id = ((TfRow *)g_ptr_array_index (rows, k))->frame;
-      TfFrameRow *frame = g_hash_table_add (seen, GSIZE_TO_POINTER (id))
-                              ? tf_ledger_frame (ledger, id, NULL)
-                              : NULL;
-      if (frame != NULL)
-        g_ptr_array_add (frames, frame);
+      g_autoptr (TfFrameRow) frame = g_hash_table_add (seen, GSIZE_TO_POINTER (id))
+                                         ? tf_ledger_frame (ledger, id, NULL)
+                                         : NULL;
+      if (frame == NULL)
+        continue;
+      TfFrameNoise noise = tf_frame_noise (frame);
+      g_array_append_val (noises, noise);
     }
-  return tf_study_floor_of_frames (frames);
+  return tf_study_floor_of_noises (noises);
 }
 
 TfSeries *

@@ -6,18 +6,8 @@
 #include <math.h>
 #include <string.h>
 
-#include "tf-ledger-scales.h"
 #include "tf-sieve.h"
 #include "tf-study-private.h"
-
-struct _TfStudyTaken
-{
-  GPtrArray *rows; /* TfRow */
-  TfSample *all;
-  GPtrArray *scales; /* TfKeptScale */
-  double floor;
-  gboolean with_hints, with_scales;
-};
 
 gboolean
 tf_stretch_is_all (const TfStretch *s)
@@ -64,62 +54,6 @@ tf_study_copy (const TfStudy *study)
 
 /* -- rows ------------------------------------------------------------------------------------ */
 
-TfStudyTaken *
-tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error)
-{
-  g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
-  double floor = tf_study_even_floor (ledger, NULL);
-  g_autoptr (GPtrArray) scales = tf_ledger_scales (ledger, error);
-  GPtrArray *rows = scales != NULL ? tf_study_read_rows (study, ledger, floor, error) : NULL;
-  if (rows == NULL)
-    return NULL;
-  TfStudyTaken *taken = g_atomic_rc_box_new0 (TfStudyTaken);
-  taken->rows = rows;
-  taken->scales = g_steal_pointer (&scales);
-  taken->all = tf_study_sample_rows (rows);
-  taken->floor = floor;
-  taken->with_hints = study->sieve.with_hints;
-  taken->with_scales = study->sieve.with_scales;
-  if (taken->with_scales)
-    tf_study_scale (taken->all, rows, taken->scales, TRUE);
-  return taken;
-}
-
-TfStudyTaken *
-tf_study_taken_ref (TfStudyTaken *taken)
-{
-  return g_atomic_rc_box_acquire (taken);
-}
-
-static void
-taken_clear (gpointer data)
-{
-  TfStudyTaken *taken = data;
-  g_ptr_array_unref (taken->rows);
-  g_ptr_array_unref (taken->scales);
-  tf_sample_free (taken->all);
-}
-
-void
-tf_study_taken_unref (TfStudyTaken *taken)
-{
-  if (taken != NULL)
-    g_atomic_rc_box_release_full (taken, taken_clear);
-}
-
-gboolean
-tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study)
-{
-  return !taken->with_hints == !study->sieve.with_hints
-         && !taken->with_scales == !study->sieve.with_scales;
-}
-
-guint
-tf_study_taken_get_n (const TfStudyTaken *taken)
-{
-  return tf_sample_get_n (taken->all);
-}
-
 static gboolean
 within (const TfStretch *s, const TfSampleRow *row)
 {
@@ -158,7 +92,12 @@ tf_study_again (const TfStudyTaken *taken, const TfStudy *study, const TfStretch
   if (depth < TF_FINDINGS_COMPLETE)
     own->hale.draws = own->joy.draws = 0;
   g_autoptr (TfSample) part = all ? NULL : narrow (taken->all, stretch);
-  const TfStudyRows rows = { taken->rows, all ? taken->all : part, taken->scales };
+  TfStudyRows rows = tf_study_taken_rows (taken);
+  if (!all)
+    {
+      rows.all = part;
+      rows.taken = NULL; /* what was counted when they were taken was of all */
+    }
   /* other measures and the hints are read for the whole ledger, not for a stretch */
   TfFindings *findings = tf_study_run_rows (own, &rows, all ? ledger : NULL, taken->floor,
                                             depth == TF_FINDINGS_WHAT_IF);

@@ -17,12 +17,15 @@ static void
 note_instruments (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows)
 {
   g_autoptr (GPtrArray) instruments = g_ptr_array_new ();
-  for (guint k = 0; rows->rows != NULL && k < tf_sample_get_n (findings->sample); k++)
+  const char *last = NULL;
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
     {
-      guint32 at = tf_sample_get (findings->sample, k)->row;
-      const TfRow *row = g_ptr_array_index (rows->rows, at);
-      if (!g_ptr_array_find_with_equal_func (instruments, row->instrument, g_str_equal, NULL))
-        g_ptr_array_add (instruments, row->instrument);
+      const char *name = tf_study_fact (rows, tf_sample_get (findings->sample, k)->row).instrument;
+      if (name == NULL || name == last)
+        continue;
+      last = name;
+      if (!g_ptr_array_find_with_equal_func (instruments, name, g_str_equal, NULL))
+        g_ptr_array_add (instruments, (gpointer)name);
     }
   if (instruments->len < 2 || !tf_study_unscaled (findings, study, rows))
     return;

@@ -49,8 +49,8 @@ tf_study_run_source (const TfStudy *study, const TfStudySource *source)
   g_autoptr (TfSample) all = tf_sample_new ();
   for (guint k = 0; k < tf_sample_get_n (source->all); k++)
     tf_sample_add (all, tf_sample_get (source->all, k));
+  const TfStudyRows rows = { .rows = source->rows, .all = all, .scales = source->scales };
   if (study->sieve.with_scales)
-    tf_study_scale (all, source->rows, source->scales, TRUE);
-  const TfStudyRows rows = { source->rows, all, source->scales };
+    tf_study_scale (all, &rows, TRUE);
   return tf_study_run_rows (study, &rows, NULL, source->floor_gauss, TRUE);
 }

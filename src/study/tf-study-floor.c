@@ -3,47 +3,37 @@
  */
 #include <math.h>
 
+#include "tf-ledger-brief.h"
 #include "tf-study-private.h"
 
 /* The study's one even floor, and the rows measured with it. */
 
-gboolean
-tf_study_has_floor (const TfRow *row, double gauss)
-{
-  if (row->outside != NULL)
-    return TRUE; /* its floor is the source's affair */
-  return row->measure.floor_kind == TF_FLOOR_EVEN
-         && fabs (row->measure.floor_gauss - gauss) <= 0.005 * gauss;
-}
-
 /* 3 sigma on the field used: a radial product and a map need no 1/mu. A model map has no noise of an instrument, and a frame
  * whose header gives no unit is not known to be in gauss: they have no say. */
 static double
-frame_floor (const TfFrameRow *frame)
+frame_floor (const TfFrameNoise *frame)
 {
-  if (frame->info->kind == TF_KIND_MODEL_MAP || *frame->info->unit == '\0')
+  if (frame->model_map || !frame->known_unit)
     return NAN;
-  gboolean as_is
-      = frame->info->field == TF_FIELD_RADIAL || tf_geometry_is_map (&frame->info->geometry);
-  return 3.0 * frame->noise_gauss / (as_is ? 1.0 : 0.5);
+  return 3.0 * frame->noise_gauss / (frame->as_is ? 1.0 : 0.5);
 }
 
 double
-tf_study_floor_of_frames (const GPtrArray *frames)
+tf_study_floor_of_noises (const GArray *noises)
 {
   g_autoptr (GHashTable) by_instrument
       = g_hash_table_new_full (g_str_hash, g_str_equal, NULL, (GDestroyNotify)g_array_unref);
-  for (guint k = 0; k < frames->len; k++)
+  for (guint k = 0; k < noises->len; k++)
     {
-      const TfFrameRow *frame = g_ptr_array_index (frames, k);
+      const TfFrameNoise *frame = &g_array_index (noises, TfFrameNoise, k);
       double floor = frame_floor (frame);
       if (!(floor > 0))
         continue;
-      GArray *floors = g_hash_table_lookup (by_instrument, frame->info->instrument);
+      GArray *floors = g_hash_table_lookup (by_instrument, (gpointer)frame->instrument);
       if (floors == NULL)
         {
           floors = g_array_new (FALSE, FALSE, sizeof (double));
-          g_hash_table_insert (by_instrument, frame->info->instrument, floors);
+          g_hash_table_insert (by_instrument, (gpointer)frame->instrument, floors);
         }
       g_array_append_val (floors, floor);
     }
@@ -60,8 +50,8 @@ tf_study_floor_of_frames (const GPtrArray *frames)
 double
 tf_study_even_floor (TfLedger *ledger, GError **error)
 {
-  g_autoptr (GPtrArray) frames = tf_ledger_frames (ledger, error);
-  return frames != NULL ? tf_study_floor_of_frames (frames) : NAN;
+  g_autoptr (GArray) noises = tf_ledger_noises (ledger, error);
+  return noises != NULL ? tf_study_floor_of_noises (noises) : NAN;
 }
 
 GPtrArray *
@@ -77,7 +67,7 @@ tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GE
       TfMeasure even = { 0 };
       g_autofree char *method = tf_measure_dup_even_method (row->method, floor_gauss, &params);
       if (method == NULL
-          || !tf_ledger_has_measure (ledger, row->frame, row->outline, method, &even))
+          || !tf_ledger_even_measure (ledger, row->mark, row->is_hint, method, &even))
         continue;
       tf_measure_clear (&row->measure);
       row->measure = even;

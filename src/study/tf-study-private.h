@@ -4,24 +4,78 @@
 #pragma once
 
 #include "tf-ledger-scales.h"
+#include "tf-study-again.h"
 #include "tf-study.h"
 
 G_BEGIN_DECLS
 
-/** TfStudyRows: what a study reads: the ledger's rows, and each as a sample row whose number is its
- * place among them. */
+/** TfStudyFact: what a study asks of a row beside its sample row. */
 typedef struct
 {
-  const GPtrArray *rows; /* TfRow; NULL: there is nothing but the sample rows */
+  gint64 mark;            /* local key; of a hint negative; of an outside row 0 */
+  const char *instrument; /* borrowed of the rows, or interned; NULL: not known */
+  double floor_gauss;
+  gint8 even; /* the floor is an even one */
+  gint8 is_hint, unipolar, model_map, simulated, outside;
+  gint8 outside_hint; /* its source calls it a hint */
+} TfStudyFact;
+
+/** TfStudyRows: what a study reads, borrowed: sample rows, of which each one's number is its place
+ * among the rows or facts. */
+typedef struct
+{
+  const GPtrArray *rows; /* TfRow; NULL: none is there, or none was needed */
   TfSample *all;
   const GPtrArray *scales; /* TfKeptScale; NULL: none */
+  const GArray *facts;     /* TfStudyFact; NULL: those of the rows */
+  const struct _TfStudyTaken *taken; /* whose these all are; NULL: not known */
 } TfStudyRows;
+
+struct _TfStudyTaken
+{
+  GPtrArray *rows; /* whole rows; NULL: facts are enough */
+  GArray *facts;
+  TfSample *all;
+  GPtrArray *scales;
+  double floor;
+  gboolean with_hints, with_scales;
+  /* Without whole rows: those that lack the even floor a fifth lower and higher; those not of their own
+   * measure; hints of the ledger, taken or not. */
+  guint n_lacking[2], n_even, n_hints;
+};
+
+/** tf_study_fact: of the row of that number; of none: an outside one. */
+TfStudyFact tf_study_fact (const TfStudyRows *rows, guint number);
+TfStudyFact tf_study_fact_of_row (const TfRow *row);
+/** tf_study_fact_has_floor: whether it was measured with the even floor @gauss (within 0.5 %), or came
+ * in a table. */
+gboolean tf_study_fact_has_floor (const TfStudyFact *fact, double gauss);
+/** tf_study_take_with: (transfer full): what the study takes of a ledger, measured with that even floor
+ * where it is; NaN or 0: each its own. */
+struct _TfStudyTaken *
+tf_study_take_with (const TfStudy *study, TfLedger *ledger, double floor, GError **error);
+TfStudyRows tf_study_taken_rows (const struct _TfStudyTaken *taken);
+/** tf_study_needs_whole_rows: whether its conditions ask for more than facts. */
+gboolean tf_study_needs_whole_rows (const TfStudy *study);
+/** tf_study_complain_empty: sets an error when there is nothing to judge. */
+gboolean
+tf_study_complain_empty (const TfStudy *study, guint n, TfLedger *ledger, GError **error);
+
+/** TfStudyPlace: where a mark or hint of the ledger belongs, by local keys; 0: none. */
+typedef struct
+{
+  gboolean is_hint;
+  gint64 mark, region, passage, same;
+  int born; /* TfEnd */
+} TfStudyPlace;
+/** tf_study_place_row: its region, passage and where it was born. */
+void tf_study_place_row (TfSampleRow *row, const TfStudyPlace *place);
 
 /** tf_study_sample_rows: (transfer full): ledger rows as sample rows. */
 TfSample *tf_study_sample_rows (const GPtrArray *rows);
-/** tf_study_scale: multiplies the fluxes of @all by the kept scales of their instruments; @on FALSE:
- * divides by them again. Returns: how many rows have one. */
-guint tf_study_scale (TfSample *all, const GPtrArray *rows, const GPtrArray *scales, gboolean on);
+/** tf_study_scale: multiplies the fluxes of @all, numbered as @rows, by the kept scales of their
+ * instruments; @on FALSE: divides by them again. Returns: how many rows have one. */
+guint tf_study_scale (TfSample *all, const TfStudyRows *rows, gboolean on);
 /** tf_study_unscaled: whether instruments are pooled in the picks without a scale between them: more
  * than one, and one at least that has neither a scale nor is a scale's reference. */
 gboolean
@@ -57,17 +111,14 @@ TfFindings *tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, Tf
                                double floor, gboolean what_if);
 /** tf_study_count: one more of @key. */
 void tf_study_count (GHashTable *counts, const char *key);
-/** tf_study_has_floor: whether a row was measured with the even floor @gauss (within 0.5 %), or came
- * in a table. */
-gboolean tf_study_has_floor (const TfRow *row, double gauss);
 
 /* Members of the `laws` document. */
 void tf_study_build_interval (JsonBuilder *builder, const char *key, TfInterval interval);
 void tf_study_build_cell (JsonBuilder *builder, int cycle, int hemisphere);
 void tf_study_build_parts (JsonBuilder *builder, const TfFindings *findings);
 
-/** tf_study_floor_of_frames: the even floor of those TfFrameRow, G; NaN without. */
-double tf_study_floor_of_frames (const GPtrArray *frames);
+/** tf_study_floor_of_noises: the even floor of those TfFrameNoise, G; NaN without. */
+double tf_study_floor_of_noises (const GArray *noises);
 /** tf_study_what_if: (element-type TfWhatIf): the share and the slope under other choices, each
  * alone, and into findings->cycle_choice the three ways of telling a cycle. @ledger: (nullable): for
  * what needs other measures or the hints. */

@@ -79,6 +79,16 @@ origin_of (const TfRow *row)
 }
 
 void
+tf_study_place_row (TfSampleRow *row, const TfStudyPlace *place)
+{
+  guint32 alone = place->is_hint ? HINT_CLUSTER + (guint32)place->mark : (guint32)place->mark;
+  guint32 region = place->is_hint ? alone : (guint32)place->region;
+  row->region = place->same != 0 ? PASSAGE_CLUSTER + (guint32)place->same : region;
+  row->passage = place->passage != 0 ? PASSAGE_CLUSTER + (guint32)place->passage : alone;
+  row->born = place->born == TF_END_UNKNOWN ? -1 : place->born == TF_END_ON_DISK;
+}
+
+void
 tf_study_row (const TfRow *row, TfSampleRow *out)
 {
   tf_study_measure_row (&row->measure, out);
@@ -88,11 +98,8 @@ tf_study_row (const TfRow *row, TfSampleRow *out)
       return;
     }
   out->origin = origin_of (row);
-  guint32 alone = row->is_hint ? HINT_CLUSTER + (guint32)row->mark : (guint32)row->mark;
-  guint32 region = row->is_hint ? alone : (guint32)row->region_key;
-  out->region = row->same != 0 ? PASSAGE_CLUSTER + (guint32)row->same : region;
-  out->passage = row->passage_key != 0 ? PASSAGE_CLUSTER + (guint32)row->passage_key : alone;
-  out->born = row->born == TF_END_UNKNOWN ? -1 : row->born == TF_END_ON_DISK;
+  tf_study_place_row (out, &(TfStudyPlace){ row->is_hint, row->mark, row->region_key,
+                                            row->passage_key, row->same, row->born });
 }
 
 void

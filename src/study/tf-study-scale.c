@@ -18,13 +18,14 @@ find_scale (const GPtrArray *scales, const char *instrument)
 }
 
 guint
-tf_study_scale (TfSample *all, const GPtrArray *rows, const GPtrArray *scales, gboolean on)
+tf_study_scale (TfSample *all, const TfStudyRows *rows, gboolean on)
 {
   guint n = 0;
-  for (guint k = 0; rows != NULL && k < tf_sample_get_n (all); k++)
+  gboolean any = rows->scales != NULL && rows->scales->len > 0;
+  for (guint k = 0; any && k < tf_sample_get_n (all); k++)
     {
-      const TfRow *own = g_ptr_array_index (rows, tf_sample_get (all, k)->row);
-      const TfKeptScale *scale = find_scale (scales, own->instrument);
+      TfStudyFact own = tf_study_fact (rows, tf_sample_get (all, k)->row);
+      const TfKeptScale *scale = find_scale (rows->scales, own.instrument);
       if (scale == NULL)
         continue;
       tf_sample_scale_flux (all, k, on ? scale->factor : 1.0 / scale->factor);
@@ -46,11 +47,13 @@ gboolean
 tf_study_unscaled (const TfFindings *findings, const TfStudy *study, const TfStudyRows *rows)
 {
   gboolean several = FALSE, lacking = FALSE;
-  const char *first = NULL;
-  for (guint k = 0; rows->rows != NULL && k < tf_sample_get_n (findings->sample); k++)
+  const char *first = NULL, *last = NULL;
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
     {
-      guint32 at = tf_sample_get (findings->sample, k)->row;
-      const char *name = ((TfRow *)g_ptr_array_index (rows->rows, at))->instrument;
+      const char *name = tf_study_fact (rows, tf_sample_get (findings->sample, k)->row).instrument;
+      if (name == NULL || name == last)
+        continue; /* interned names of one instrument are the same */
+      last = name;
       first = first != NULL ? first : name;
       several |= g_strcmp0 (first, name) != 0;
       lacking |= !study->sieve.with_scales

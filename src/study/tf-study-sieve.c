@@ -4,7 +4,6 @@
 #include <math.h>
 #include <string.h>
 
-#include "tf-ledger-outside.h"
 #include "tf-sieve.h"
 #include "tf-study-private.h"
 
@@ -58,17 +57,17 @@ find_reason (const Condition *conditions, guint n)
   return NULL;
 }
 
-/* What the ledger's row alone can tell. */
+/* What the sample row does not tell. */
 static const char *
-find_row_reason (const TfSieveParams *p, const TfRow *row)
+find_row_reason (const TfSieveParams *p, const TfStudyFact *fact)
 {
-  if (!p->with_hints && row->is_hint)
+  if (!p->with_hints && fact->is_hint)
     return "hint";
-  if (!p->with_models && g_strcmp0 (row->kind, "model map") == 0)
+  if (!p->with_models && fact->model_map)
     return "model-map";
-  if (row->outside != NULL && row->outside->hinted)
+  if (fact->outside_hint)
     return "outside-hint";
-  return row->is_hint && row->unipolar ? "unipolar-hint" : NULL;
+  return fact->is_hint && fact->unipolar ? "unipolar-hint" : NULL;
 }
 
 void
@@ -123,15 +122,15 @@ ask_more (const GPtrArray *more, const TfStudy *study, const TfDivides *divides,
 TfSample *
 tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings)
 {
-  TfSample *marks = tf_sample_new ();
+  TfSample *marks = tf_sample_new_sized (tf_sample_get_n (rows->all));
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   for (guint k = 0; k < tf_sample_get_n (rows->all); k++)
     {
       const TfSampleRow *s = tf_sample_get (rows->all, k);
-      const TfRow *row = rows->rows != NULL ? g_ptr_array_index (rows->rows, s->row) : NULL;
+      const TfStudyFact fact = tf_study_fact (rows, s->row);
       Condition conditions[MARK_CONDITIONS];
       mark_conditions (&study->sieve, s, conditions);
-      const char *reason = row != NULL ? find_row_reason (&study->sieve, row) : NULL;
+      const char *reason = find_row_reason (&study->sieve, &fact);
       if (reason == NULL)
         reason = find_reason (conditions, MARK_CONDITIONS);
       if (reason == NULL)

@@ -496,40 +496,56 @@ fill_from (TfWhatIf *row, const Variant *v, From from, const TfStudyRows *rows,
 
 /* How many of the rows lack a measure with that floor. */
 static guint
-count_unmeasured (const GPtrArray *rows, double floor)
+count_unmeasured (const TfStudyRows *rows, double floor)
 {
   guint n = 0;
-  for (guint k = 0; k < rows->len; k++)
-    n += !tf_study_has_floor (g_ptr_array_index (rows, k), floor);
+  for (guint k = 0; k < tf_sample_get_n (rows->all); k++)
+    {
+      const TfStudyFact fact = tf_study_fact (rows, tf_sample_get (rows->all, k)->row);
+      n += !tf_study_fact_has_floor (&fact, floor);
+    }
   return n;
+}
+
+/* Whether what was counted when the rows were taken says all: then nothing is read. */
+static gboolean
+fill_from_counts (TfWhatIf *row, const Variant *v, const Context *context)
+{
+  const TfStudyTaken *taken = context->rows->taken;
+  if (taken == NULL || taken->rows != NULL)
+    return FALSE;
+  gboolean lower = v->floor_factor < 1.0;
+  if (v->with_hints && taken->n_hints == 0)
+    row->missing = "no-hints";
+  else if (v->floor_factor > 0.0 && !v->with_hints && taken->floor > 0.0 && taken->n_lacking[lower ? 0 : 1] > 0)
+    {
+      row->missing = "not-measured";
+      row->n_missing = taken->n_lacking[lower ? 0 : 1];
+    }
+  else if (v->floor_factor <= 0.0 && taken->n_even == 0)
+    fill_from (row, v, FROM_MARKS, context->rows, context->findings);
+  else
+    return FALSE;
+  return TRUE;
 }
 
 /* Rows of the ledger with another floor, or with the hints. */
 static void
 fill_from_ledger (TfWhatIf *row, const Variant *v, const Context *context)
 {
+  if (fill_from_counts (row, v, context))
+    return;
   double floor = context->findings->even_floor_gauss * v->floor_factor;
-  const TfRowQuery query
-      = { .marks = TRUE, .hints = v->study.sieve.with_hints, .outside = TRUE,
-          .no_outlines = floor <= 0.0 };
-  g_autoptr (GPtrArray) found = tf_study_rows (context->ledger, &query, floor, NULL);
-  row->n_missing
-      = found != NULL && floor > 0.0 && !v->with_hints ? count_unmeasured (found, floor) : 0;
-  if (found == NULL || row->n_missing > 0)
-    {
-      row->missing = "not-measured";
-      return;
-    }
-  if (v->with_hints && found->len == tf_sample_get_n (context->rows->all))
-    {
-      row->missing = "no-hints";
-      return;
-    }
-  g_autoptr (TfSample) all = tf_study_sample_rows (found);
-  if (v->study.sieve.with_scales)
-    tf_study_scale (all, found, context->rows->scales, TRUE);
-  const TfStudyRows rows = { found, all, context->rows->scales };
-  fill_from (row, v, FROM_MARKS, &rows, context->findings);
+  g_autoptr (TfStudyTaken) taken = tf_study_take_with (&v->study, context->ledger, floor, NULL);
+  const TfStudyRows rows = taken != NULL ? tf_study_taken_rows (taken) : (TfStudyRows){ 0 };
+  if (taken != NULL && floor > 0.0 && !v->with_hints)
+    row->n_missing = count_unmeasured (&rows, floor);
+  if (taken == NULL || row->n_missing > 0)
+    row->missing = "not-measured";
+  else if (v->with_hints && tf_sample_get_n (rows.all) == tf_sample_get_n (context->rows->all))
+    row->missing = "no-hints";
+  else
+    fill_from (row, v, FROM_MARKS, &rows, context->findings);
 }
 
 /* The same rows with the scales on, or off. Of one instrument there is nothing to say. */
@@ -540,9 +556,10 @@ fill_scaled (TfWhatIf *row, const Variant *v, const Context *context)
   g_autoptr (TfSample) all = tf_sample_new ();
   for (guint k = 0; k < tf_sample_get_n (own->all); k++)
     tf_sample_add (all, tf_sample_get (own->all, k));
-  if (tf_study_scale (all, own->rows, own->scales, v->study.sieve.with_scales) > 0)
+  if (tf_study_scale (all, own, v->study.sieve.with_scales) > 0)
     {
-      const TfStudyRows rows = { own->rows, all, own->scales };
+      TfStudyRows rows = *own;
+      rows.all = all;
       fill_from (row, v, FROM_MARKS, &rows, context->findings);
     }
   else if (tf_study_unscaled (context->findings, context->study, own))

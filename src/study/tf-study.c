@@ -6,6 +6,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-distinct.h"
 #include "tf-sieve.h"
 #include "tf-study-private.h"
 
@@ -158,25 +159,21 @@ static void
 count_marks (TfFindings *findings, const TfStudyRows *rows)
 {
   guint n = tf_sample_get_n (findings->sample);
-  g_autoptr (GHashTable) picked = g_hash_table_new (NULL, NULL);
+  g_autoptr (TfDistinct) picked = tf_distinct_new (n);
   findings->marks = g_new0 (gint64, n + 1);
   for (guint k = 0; k < n; k++)
     {
       const TfSampleRow *pick = tf_sample_get (findings->sample, k);
-      const TfRow *row = rows->rows != NULL ? g_ptr_array_index (rows->rows, pick->row) : NULL;
-      g_hash_table_add (picked, GUINT_TO_POINTER (pick->passage));
-      if (row == NULL)
-        continue;
-      findings->simulated += row->simulated != FALSE;
-      if (row->outside != NULL)
-        continue;
-      findings->marks[k] = row->is_hint ? -row->mark : row->mark;
-      findings->n_other_floor += !tf_study_has_floor (row, findings->even_floor_gauss);
+      const TfStudyFact fact = tf_study_fact (rows, pick->row);
+      tf_distinct_add (picked, pick->passage);
+      findings->simulated += fact.simulated != 0;
+      findings->marks[k] = fact.mark;
+      findings->n_other_floor += !tf_study_fact_has_floor (&fact, findings->even_floor_gauss);
     }
   for (guint k = 0; k < tf_sample_get_n (findings->every); k++)
     {
       const TfSampleRow *mark = tf_sample_get (findings->every, k);
-      if (!g_hash_table_contains (picked, GUINT_TO_POINTER (mark->passage)))
+      if (tf_distinct_find (picked, mark->passage) == G_MAXUINT)
         continue;
       findings->n_outside += mark->origin == TF_ORIGIN_OUTSIDE;
       findings->n_marks += mark->origin != TF_ORIGIN_HINT && mark->origin != TF_ORIGIN_OUTSIDE;
@@ -295,14 +292,14 @@ TfFindings *
 tf_study_run_sample (const TfStudy *study, const TfSample *all)
 {
   g_return_val_if_fail (study != NULL && all != NULL, NULL);
-  const TfStudyRows rows = { NULL, (TfSample *)all, NULL };
+  const TfStudyRows rows = { .all = (TfSample *)all };
   return tf_study_run_rows (study, &rows, NULL, NAN, TRUE);
 }
 
-static gboolean
-complain_empty (const TfStudy *study, const GPtrArray *rows, TfLedger *ledger, GError **error)
+gboolean
+tf_study_complain_empty (const TfStudy *study, guint n, TfLedger *ledger, GError **error)
 {
-  if (rows->len > 0)
+  if (n > 0)
     return FALSE;
   g_set_error (error, TF_STUDY_ERROR, TF_STUDY_ERROR_EMPTY,
                study->sieve.with_hints
@@ -313,33 +310,21 @@ complain_empty (const TfStudy *study, const GPtrArray *rows, TfLedger *ledger, G
   return TRUE;
 }
 
-/* Numbers in the order in which they first come, from 1: the draws of a bootstrap then do not hang
- * on a ledger's local keys, and a bundle's rows give the same. */
-static guint32
-renumber (GHashTable *numbers, guint32 key)
-{
-  guint32 number = GPOINTER_TO_UINT (g_hash_table_lookup (numbers, GUINT_TO_POINTER (key)));
-  if (number == 0)
-    {
-      number = g_hash_table_size (numbers) + 1;
-      g_hash_table_insert (numbers, GUINT_TO_POINTER (key), GUINT_TO_POINTER (number));
-    }
-  return number;
-}
-
+/* Regions and passages are numbered in the order in which they first come, from 1: the draws of a
+ * bootstrap then do not hang on a ledger's local keys, and a bundle's rows give the same. */
 TfSample *
 tf_study_sample_rows (const GPtrArray *rows)
 {
-  TfSample *all = tf_sample_new ();
-  g_autoptr (GHashTable) regions = g_hash_table_new (NULL, NULL);
-  g_autoptr (GHashTable) passages = g_hash_table_new (NULL, NULL);
+  TfSample *all = tf_sample_new_sized (rows->len);
+  g_autoptr (TfDistinct) regions = tf_distinct_new (rows->len);
+  g_autoptr (TfDistinct) passages = tf_distinct_new (rows->len);
   for (guint k = 0; k < rows->len; k++)
     {
       TfSampleRow row;
       tf_study_row (g_ptr_array_index (rows, k), &row);
       row.row = k;
-      row.region = renumber (regions, row.region);
-      row.passage = renumber (passages, row.passage);
+      row.region = tf_distinct_add (regions, row.region) + 1;
+      row.passage = tf_distinct_add (passages, row.passage) + 1;
       tf_sample_add (all, &row);
     }
   return all;
@@ -348,9 +333,10 @@ tf_study_sample_rows (const GPtrArray *rows)
 GPtrArray *
 tf_study_read_rows (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
 {
-  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints, .outside = TRUE };
+  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints, .outside = TRUE,
+                             .no_outlines = TRUE };
   g_autoptr (GPtrArray) found = tf_study_rows (ledger, &query, floor, error);
-  if (found == NULL || complain_empty (study, found, ledger, error))
+  if (found == NULL || tf_study_complain_empty (study, found->len, ledger, error))
     return NULL;
   return g_steal_pointer (&found);
 }
@@ -359,16 +345,9 @@ TfFindings *
 tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
-  double floor = tf_study_even_floor (ledger, NULL);
-  g_autoptr (GPtrArray) found = tf_study_read_rows (study, ledger, floor, error);
-  if (found == NULL)
+  g_autoptr (TfStudyTaken) taken = tf_study_take (study, ledger, error);
+  if (taken == NULL)
     return NULL;
-  g_autoptr (TfSample) all = tf_study_sample_rows (found);
-  g_autoptr (GPtrArray) scales = tf_ledger_scales (ledger, error);
-  if (scales == NULL)
-    return NULL;
-  if (study->sieve.with_scales)
-    tf_study_scale (all, found, scales, TRUE);
-  const TfStudyRows rows = { found, all, scales };
-  return tf_study_run_rows (study, &rows, ledger, floor, TRUE);
+  const TfStudyRows rows = tf_study_taken_rows (taken);
+  return tf_study_run_rows (study, &rows, ledger, taken->floor, TRUE);
 }

@@ -9,11 +9,14 @@
  *   begin   the tally of a sample of all points made, once
  *   move    a divide moved by half a degree: judged, shares with exact intervals, the robust slope,
  *           and what lies over the dots drawn
+ *   study   opened, the default study run with all its what-ifs, without what takes draws
+ *   rows    opened, all whole rows read, as an export does (once)
  * Nothing is judged here whether it is good. */
 
 #include <math.h>
 #include <stdio.h>
 #include <stdlib.h>
+#include <sys/resource.h>
 
 #include "tf-study.h"
 #include "tf-tally.h"
@@ -142,6 +145,41 @@ do_move (Bench *bench)
 }
 
 static double
+do_study (Bench *bench)
+{
+  double begun = now_ms ();
+  g_autoptr (TfLedger) ledger = tf_ledger_open (bench->path, NULL);
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  study->hale.draws = study->joy.draws = study->drift.draws = 0;
+  g_autoptr (TfFindings) findings = ledger != NULL ? tf_study_run (study, ledger, NULL) : NULL;
+  if (findings == NULL)
+    exit (1);
+  return now_ms () - begun;
+}
+
+static double
+do_rows (Bench *bench)
+{
+  double begun = now_ms ();
+  g_autoptr (TfLedger) ledger = tf_ledger_open (bench->path, NULL);
+  const TfRowQuery query = { .marks = TRUE, .no_outlines = TRUE };
+  g_autoptr (GPtrArray) rows = ledger != NULL ? tf_ledger_rows (ledger, &query, NULL) : NULL;
+  if (rows == NULL || rows->len == 0)
+    exit (1);
+  return now_ms () - begun;
+}
+
+/* Processor time of all threads, ms. */
+static double
+cpu_ms (void)
+{
+  struct rusage used;
+  getrusage (RUSAGE_SELF, &used);
+  return 1000.0 * (double)(used.ru_utime.tv_sec + used.ru_stime.tv_sec)
+         + (double)(used.ru_utime.tv_usec + used.ru_stime.tv_usec) / 1000.0;
+}
+
+static double
 least (Bench *bench, double (*job) (Bench *), guint rounds)
 {
   double best = INFINITY;
@@ -165,8 +203,11 @@ main (int argc, char **argv)
   do_open (&bench); /* an older file is brought up first */
   double open_ms = least (&bench, do_open, rounds), wings_ms = least (&bench, do_wings, rounds);
   double begin_ms = do_begin (&bench), move_ms = least (&bench, do_move, 12 + rounds);
-  printf ("{\"n\": %u, \"open\": %.2f, \"wings\": %.2f, \"begin\": %.2f, \"move\": %.3f}\n",
-          bench.wings.n, open_ms, wings_ms, begin_ms, move_ms);
+  double cpu = cpu_ms (), study_ms = least (&bench, do_study, rounds);
+  double study_cpu = (cpu_ms () - cpu) / rounds, rows_ms = do_rows (&bench);
+  printf ("{\"n\": %u, \"open\": %.2f, \"wings\": %.2f, \"begin\": %.2f, \"move\": %.3f, "
+          "\"study\": %.1f, \"study_cpu\": %.1f, \"rows\": %.1f}\n",
+          bench.wings.n, open_ms, wings_ms, begin_ms, move_ms, study_ms, study_cpu, rows_ms);
   tf_tally_free (bench.tally);
   tf_sample_free (bench.sample);
   tf_divides_unref (bench.divides);

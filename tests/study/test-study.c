@@ -163,6 +163,7 @@ main (int argc, char **argv)
   test_study_add_pair ();
   test_study_add_sample ();
   test_study_add_shift ();
+  test_study_add_take ();
   test_study_add_file ();
   int result = g_test_run ();
   remove_tree (state);

@@ -13,6 +13,7 @@ void test_study_add_row (void);
 void test_study_add_sample (void);
 void test_study_add_shift (void);
 void test_study_add_series (void);
+void test_study_add_take (void);
 
 /** test_study_measure: a well measured bipole of 2013-06-01 (cycle 24) at @lat with that leading
  * polarity. */

@@ -1,0 +1,284 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include <math.h>
+
+#include "tf-distinct.h"
+#include "tf-ledger-brief.h"
+#include "tf-ledger-outside.h"
+#include "tf-sort.h"
+#include "tf-study-private.h"
+
+/* What a study takes of a ledger. As a rule that is the briefs of marks and hints (tf-ledger-brief.h)
+ * and the rows of outside tables; where conditions ask for any column, or an older ledger has no
+ * briefs, whole rows. Both give the same sample. */
+
+/* -- what is known of a row beside its sample row ------------------------------------------------ */
+
+TfStudyFact
+tf_study_fact_of_row (const TfRow *row)
+{
+  return (TfStudyFact){ .mark = row->outside != NULL ? 0 : row->is_hint ? -row->mark : row->mark,
+                        .instrument = row->instrument,
+                        .floor_gauss = row->measure.floor_gauss,
+                        .even = row->measure.floor_kind == TF_FLOOR_EVEN,
+                        .is_hint = row->is_hint != FALSE,
+                        .unipolar = row->unipolar != FALSE,
+                        .model_map = g_strcmp0 (row->kind, "model map") == 0,
+                        .simulated = row->simulated != FALSE,
+                        .outside = row->outside != NULL,
+                        .outside_hint = row->outside != NULL && row->outside->hinted };
+}
+
+TfStudyFact
+tf_study_fact (const TfStudyRows *rows, guint number)
+{
+  if (rows->facts != NULL)
+    return g_array_index (rows->facts, TfStudyFact, number);
+  if (rows->rows != NULL)
+    return tf_study_fact_of_row (g_ptr_array_index (rows->rows, number));
+  return (TfStudyFact){ .outside = TRUE };
+}
+
+gboolean
+tf_study_fact_has_floor (const TfStudyFact *fact, double gauss)
+{
+  if (fact->outside)
+    return TRUE; /* its floor is the source's affair */
+  return fact->even && fabs (fact->floor_gauss - gauss) <= 0.005 * gauss;
+}
+
+/* -- briefs ---------------------------------------------------------------------------------- */
+
+/* All that is read, in the order of the ledger's rows at equal times: marks, outside rows, hints. */
+typedef struct
+{
+  const TfBrief *briefs;
+  const GPtrArray *outside; /* TfRow */
+  const GArray *frames;     /* TfBriefFrame */
+  guint n_marks, n_briefs;
+} Sources;
+
+static const TfBriefFrame *
+find_frame (const GArray *frames, gint64 key)
+{
+  const TfBriefFrame *list = (const TfBriefFrame *)(gconstpointer)frames->data;
+  guint low = 0, high = frames->len;
+  if (key >= 1 && key <= (gint64)high && list[key - 1].frame == key)
+    return &list[key - 1];
+  while (low < high)
+    {
+      guint middle = low + (high - low) / 2;
+      if (list[middle].frame < key)
+        low = middle + 1;
+      else
+        high = middle;
+    }
+  return low < frames->len && list[low].frame == key ? &list[low] : NULL;
+}
+
+static void
+take_brief (const Sources *sources, const TfBrief *b, TfMeasure *m, TfSampleRow *row, TfStudyFact *fact)
+{
+  const TfBriefFrame *frame = find_frame (sources->frames, b->frame);
+  m->time.s = b->time_s;
+  m->lat_deg = b->lat_deg;
+  m->positive.lat_deg = b->positive_lat_deg;
+  m->negative.lat_deg = b->negative_lat_deg;
+  m->cmd_deg = b->cmd_deg;
+  m->mu = b->mu;
+  m->axis_tilt_deg = b->axis_tilt_deg;
+  m->axis_bearing_deg = b->axis_bearing_deg;
+  m->tilt_terms.total = b->tilt_sigma_deg;
+  m->separation_deg = b->separation_deg;
+  m->separation_sigma_deg = b->separation_sigma_deg;
+  m->flux_unsigned_mx = b->flux_unsigned_mx;
+  m->imbalance = b->imbalance;
+  m->compactness = b->compactness;
+  m->axial_dipole_gauss = b->axial_dipole_gauss;
+  m->axial_dipole_sigma_gauss = b->axial_dipole_sigma_gauss;
+  m->leading_polarity = b->leading;
+  m->leading_sure = b->leading_sure;
+  m->ephemeral = b->ephemeral;
+  for (int k = 0; k < 3; k++)
+    m->witnesses[k] = b->witnesses[k] == G_MININT8 ? TF_WITNESS_ABSENT : b->witnesses[k];
+  tf_study_measure_row (m, row);
+  static const TfOrigin origins[] = { TF_ORIGIN_KEPT, TF_ORIGIN_CHANGED, TF_ORIGIN_DRAWN };
+  row->origin = b->origin >= 0 && b->origin < 3 ? origins[b->origin] : TF_ORIGIN_HINT;
+  tf_study_place_row (row, &(TfStudyPlace){ b->hint, b->mark, b->region, b->passage, b->same, b->born });
+  *fact = (TfStudyFact){ .mark = b->hint ? -b->mark : b->mark,
+                         .instrument = frame != NULL ? frame->instrument : NULL,
+                         .floor_gauss = b->floor_gauss,
+                         .even = b->even,
+                         .is_hint = b->hint,
+                         .unipolar = b->unipolar,
+                         .model_map = frame != NULL && frame->model_map,
+                         .simulated = frame != NULL && frame->simulated };
+}
+
+static guint *
+order_sources (const Sources *s, guint n)
+{
+  g_autofree double *times = g_new (double, n + 1);
+  guint at = 0;
+  for (guint k = 0; k < s->n_marks; k++)
+    times[at++] = s->briefs[k].time_s;
+  for (guint k = 0; k < s->outside->len; k++)
+    times[at++] = ((const TfRow *)g_ptr_array_index (s->outside, k))->measure.time.s;
+  for (guint k = s->n_marks; k < s->n_briefs; k++)
+    times[at++] = s->briefs[k].time_s;
+  return tf_sort_order (times, n);
+}
+
+static void
+take_sources (TfStudyTaken *taken, const Sources *s)
+{
+  guint n = s->n_briefs + s->outside->len;
+  g_autofree guint *order = order_sources (s, n);
+  g_autoptr (TfDistinct) regions = tf_distinct_new (n);
+  g_autoptr (TfDistinct) passages = tf_distinct_new (n);
+  TfMeasure measure = { 0 };
+  taken->all = tf_sample_new_sized (n);
+  taken->facts = g_array_sized_new (FALSE, FALSE, sizeof (TfStudyFact), n);
+  for (guint k = 0; k < n; k++)
+    {
+      TfSampleRow row;
+      TfStudyFact fact;
+      guint at = order[k];
+      if (at >= s->n_marks && at < s->n_marks + s->outside->len)
+        {
+          const TfRow *outside = g_ptr_array_index (s->outside, at - s->n_marks);
+          tf_study_row (outside, &row);
+          fact = tf_study_fact_of_row (outside);
+          fact.instrument = g_intern_string (fact.instrument); /* the row goes */
+        }
+      else
+        take_brief (s, &s->briefs[at < s->n_marks ? at : at - s->outside->len], &measure, &row, &fact);
+      row.row = k;
+      row.region = tf_distinct_add (regions, row.region) + 1;
+      row.passage = tf_distinct_add (passages, row.passage) + 1;
+      tf_sample_add (taken->all, &row);
+      g_array_append_val (taken->facts, fact);
+    }
+}
+
+static gboolean
+take_briefs (TfStudyTaken *taken, TfLedger *ledger, GError **error)
+{
+  const TfBriefQuery query
+      = { .hints = taken->with_hints,
+          .floor_gauss = taken->floor > 0 ? taken->floor : 0.0,
+          .asked_gauss = { TF_WHAT_IF_LOWER * taken->floor, TF_WHAT_IF_HIGHER * taken->floor } };
+  const TfRowQuery tables = { .outside = TRUE, .no_outlines = TRUE };
+  g_autoptr (TfBriefs) briefs = tf_ledger_briefs (ledger, &query, error);
+  g_autoptr (GPtrArray) outside = briefs != NULL ? tf_ledger_rows (ledger, &tables, error) : NULL;
+  g_autoptr (GArray) frames = outside != NULL ? tf_ledger_brief_frames (ledger, error) : NULL;
+  if (frames == NULL)
+    return FALSE;
+  Sources sources = { (const TfBrief *)(gconstpointer)briefs->rows->data, outside, frames, 0,
+                      briefs->rows->len };
+  while (sources.n_marks < sources.n_briefs && !sources.briefs[sources.n_marks].hint)
+    sources.n_marks++;
+  take_sources (taken, &sources);
+  taken->n_even = briefs->n_even;
+  taken->n_hints = briefs->n_hints;
+  taken->n_lacking[0] = briefs->n_lacking[0];
+  taken->n_lacking[1] = briefs->n_lacking[1];
+  return TRUE;
+}
+
+/* -- taking ---------------------------------------------------------------------------------- */
+
+gboolean
+tf_study_needs_whole_rows (const TfStudy *study)
+{
+  return study->mark_conditions->len > 0 || study->region_conditions->len > 0;
+}
+
+static gboolean
+take_rows (TfStudyTaken *taken, const TfStudy *study, TfLedger *ledger, GError **error)
+{
+  if (!tf_study_needs_whole_rows (study) && tf_ledger_has_briefs (ledger))
+    return take_briefs (taken, ledger, error);
+  const TfRowQuery query = { .marks = TRUE,
+                             .hints = study->sieve.with_hints,
+                             .outside = TRUE,
+                             .no_outlines = TRUE };
+  taken->rows = tf_study_rows (ledger, &query, taken->floor, error);
+  taken->all = taken->rows != NULL ? tf_study_sample_rows (taken->rows) : NULL;
+  return taken->all != NULL;
+}
+
+TfStudyTaken *
+tf_study_take_with (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
+{
+  g_autoptr (TfStudyTaken) taken = g_atomic_rc_box_new0 (TfStudyTaken);
+  taken->floor = floor;
+  taken->with_hints = study->sieve.with_hints;
+  taken->with_scales = study->sieve.with_scales;
+  taken->scales = tf_ledger_scales (ledger, error);
+  if (taken->scales == NULL || !take_rows (taken, study, ledger, error))
+    return NULL;
+  TfStudyRows rows = tf_study_taken_rows (taken);
+  if (taken->with_scales)
+    tf_study_scale (taken->all, &rows, TRUE);
+  return g_steal_pointer (&taken);
+}
+
+TfStudyTaken *
+tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
+  g_autoptr (TfStudyTaken) taken
+      = tf_study_take_with (study, ledger, tf_study_even_floor (ledger, NULL), error);
+  if (taken == NULL || tf_study_complain_empty (study, tf_sample_get_n (taken->all), ledger, error))
+    return NULL;
+  return g_steal_pointer (&taken);
+}
+
+TfStudyRows
+tf_study_taken_rows (const TfStudyTaken *taken)
+{
+  return (TfStudyRows){ .rows = taken->rows,
+                        .all = taken->all,
+                        .scales = taken->scales,
+                        .facts = taken->facts,
+                        .taken = taken };
+}
+
+TfStudyTaken *
+tf_study_taken_ref (TfStudyTaken *taken)
+{
+  return g_atomic_rc_box_acquire (taken);
+}
+
+static void
+taken_clear (gpointer data)
+{
+  TfStudyTaken *taken = data;
+  g_clear_pointer (&taken->rows, g_ptr_array_unref);
+  g_clear_pointer (&taken->facts, g_array_unref);
+  g_clear_pointer (&taken->scales, g_ptr_array_unref);
+  tf_sample_free (taken->all);
+}
+
+void
+tf_study_taken_unref (TfStudyTaken *taken)
+{
+  if (taken != NULL)
+    g_atomic_rc_box_release_full (taken, taken_clear);
+}
+
+gboolean
+tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study)
+{
+  return !taken->with_hints == !study->sieve.with_hints
+         && !taken->with_scales == !study->sieve.with_scales
+         && (taken->rows != NULL || !tf_study_needs_whole_rows (study));
+}
+
+guint
+tf_study_taken_get_n (const TfStudyTaken *taken)
+{
+  return tf_sample_get_n (taken->all);
+}

@@ -1,0 +1,170 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#include "test-study.h"
+
+#include <math.h>
+#include <string.h>
+
+#include "tf-check.h"
+#include "tf-ledger-outside.h"
+#include "tf-sieve.h"
+#include "tf-study-again.h"
+
+/* The measure of a mark's own outline with that even floor, by the method that belongs to its own. */
+static void
+measure_even (TestLedger *t, gint64 frame, const TfOutline *outline, const char *method, double floor,
+              TfMeasure measure)
+{
+  TfMeasureParams params;
+  g_autofree char *even = tf_measure_dup_even_method (method, floor, &params);
+  g_assert_nonnull (even);
+  measure.floor_kind = TF_FLOOR_EVEN;
+  measure.floor_gauss = floor;
+  g_autoptr (GError) error = NULL;
+  TfOutline *outlines[] = { (TfOutline *)outline };
+  g_assert_true (tf_ledger_add_measures (t->ledger, 1, &frame, outlines, &even, &measure, &error));
+  g_assert_no_error (error);
+}
+
+static gint64
+keep (TestLedger *t, gint64 frame, const char *method, const TfMeasure *measure)
+{
+  g_autoptr (TfOutline) outline
+      = tf_outline_new_cap (measure->time, measure->carrington_lon_deg, measure->lat_deg, 6, 24);
+  const TfMarkDeed deed = { .frame = frame, .person = t->person, .origin = TF_MARK_CHANGED,
+                            .outline = outline, .measure = measure, .method = method };
+  gint64 mark = tf_ledger_keep (t->ledger, &deed, NULL);
+  g_assert_cmpint (mark, >, 0);
+  return mark;
+}
+
+/* Marks of two instruments, out of order in time, some measured with the study's floor, too; hints. */
+static void
+fill (TestLedger *t, const char *method, double floor)
+{
+  static const char *const times[]
+      = { "2013-06-03T00:00:00Z", "2013-06-01T00:00:00Z", "2013-06-02T00:00:00Z" };
+  for (guint k = 0; k < 3; k++)
+    {
+      gint64 frame = test_study_frame (t, times[k], k == 1 ? "TEST-B" : "TEST-A", 8);
+      for (guint j = 0; j < 90; j++)
+        {
+          g_auto (TfMeasure) m = test_study_measure ((j % 2 == 0 ? 1 : -1) * (6.0 + j % 23), j % 3 == 0 ? 1 : -1);
+          m.time = tf_time_read (times[k]);
+          m.axis_tilt_deg = (double)(j % 40) - 15.0;
+          m.flux_unsigned_mx = 1e22 + 1e20 * j;
+          m.floor_gauss = 30;
+          gint64 mark = keep (t, frame, method, &m);
+          g_autoptr (TfRow) row = tf_ledger_row (t->ledger, mark, FALSE, NULL);
+          TfMeasure other = m;
+          other.cautions = NULL;
+          other.flux_unsigned_mx *= 0.9;
+          if (j % 2 == 0)
+            measure_even (t, frame, row->outline, method, floor, other);
+          if (j % 3 == 0)
+            measure_even (t, frame, row->outline, method, 0.8 * floor, other);
+          if (j % 5 == 0)
+            g_assert_true (tf_ledger_withdraw (t->ledger, mark, t->person, NULL));
+        }
+      test_study_hint (t, frame, k == 1, test_study_measure (12, 1));
+    }
+}
+
+/* "mu at-least 0" drops nothing but asks for whole rows. */
+static TfFindings *
+run_whole (TestLedger *t, gboolean with_hints)
+{
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  study->hale.draws = study->joy.draws = study->drift.draws = 0;
+  study->sieve.with_hints = with_hints;
+  g_ptr_array_add (study->mark_conditions, tf_condition_new ("mu", TF_IS_AT_LEAST, 0, NULL));
+  return tf_study_run (study, t->ledger, NULL);
+}
+
+static void
+compare (const TfFindings *brief, const TfFindings *whole)
+{
+  g_assert_cmpuint (tf_sample_get_n (brief->every), ==, tf_sample_get_n (whole->every));
+  for (guint k = 0; k < tf_sample_get_n (brief->every); k++)
+    {
+      const TfSampleRow *a = tf_sample_get (brief->every, k), *b = tf_sample_get (whole->every, k);
+      const double pairs[][2] = { { a->time.s, b->time.s },
+                                  { a->lat_deg, b->lat_deg },
+                                  { a->leading_lat_deg, b->leading_lat_deg },
+                                  { a->following_lat_deg, b->following_lat_deg },
+                                  { a->cmd_deg, b->cmd_deg },
+                                  { a->mu, b->mu },
+                                  { a->axis_tilt_deg, b->axis_tilt_deg },
+                                  { a->axis_bearing_deg, b->axis_bearing_deg },
+                                  { a->tilt_sigma_deg, b->tilt_sigma_deg },
+                                  { a->separation_deg, b->separation_deg },
+                                  { a->separation_sigma_deg, b->separation_sigma_deg },
+                                  { a->flux_mx, b->flux_mx },
+                                  { a->imbalance, b->imbalance },
+                                  { a->compactness, b->compactness },
+                                  { a->axial_dipole_gauss, b->axial_dipole_gauss },
+                                  { a->axial_dipole_sigma_gauss, b->axial_dipole_sigma_gauss } };
+      for (guint p = 0; p < G_N_ELEMENTS (pairs); p++)
+        g_assert_true ((isnan (pairs[p][0]) && isnan (pairs[p][1]))
+                       || memcmp (&pairs[p][0], &pairs[p][1], sizeof (double)) == 0);
+      g_assert_cmpuint (a->region, ==, b->region);
+      g_assert_cmpuint (a->passage, ==, b->passage);
+      g_assert_cmpint (a->leading_polarity, ==, b->leading_polarity);
+      g_assert_cmpint (a->leading_sure, ==, b->leading_sure);
+      g_assert_cmpint (a->witnesses_differ, ==, b->witnesses_differ);
+      g_assert_cmpint (a->straddles, ==, b->straddles);
+      g_assert_cmpint (a->size, ==, b->size);
+      g_assert_cmpint (a->born, ==, b->born);
+      g_assert_cmpint (a->origin, ==, b->origin);
+    }
+  g_assert_cmpuint (tf_sample_get_n (brief->sample), ==, tf_sample_get_n (whole->sample));
+  for (guint k = 0; k < tf_sample_get_n (brief->sample); k++)
+    g_assert_cmpint (brief->marks[k], ==, whole->marks[k]);
+  g_assert_cmpuint (brief->n_other_floor, ==, whole->n_other_floor);
+  g_assert_cmpuint (brief->n_hints, ==, whole->n_hints);
+  g_assert_cmpuint (brief->what_if->len, ==, whole->what_if->len);
+  for (guint k = 0; k < brief->what_if->len; k++)
+    {
+      const TfWhatIf *a = &g_array_index (brief->what_if, TfWhatIf, k),
+                     *b = &g_array_index (whole->what_if, TfWhatIf, k);
+      g_assert_cmpstr (a->name, ==, b->name);
+      g_assert_cmpstr (a->missing, ==, b->missing);
+      g_assert_cmpuint (a->n, ==, b->n);
+      g_assert_cmpuint (a->breaks, ==, b->breaks);
+      g_assert_cmpuint (a->n_missing, ==, b->n_missing);
+      g_assert_true ((isnan (a->slope) && isnan (b->slope)) || fabs (a->slope - b->slope) < 1e-15);
+    }
+}
+
+static void
+test_briefs (void)
+{
+  for (int hints = 0; hints < 2; hints++)
+    {
+      g_auto (TestLedger) t = { 0 };
+      test_study_ledger_open (&t);
+      TfMeasureParams params;
+      tf_options_reset (tf_measure_options, &params);
+      const TfCorrection none = tf_correction_none ();
+      g_autofree char *method = tf_measure_dup_method (&params, &none);
+      fill (&t, method, 48); /* 3 x 8 / 0.5 */
+      tf_check_near ("the study's floor", tf_study_even_floor (t.ledger, NULL), 48, 0);
+      g_autoptr (TfStudy) study = tf_study_new_default ();
+      study->hale.draws = study->joy.draws = study->drift.draws = 0;
+      study->sieve.with_hints = hints;
+      g_autoptr (TfFindings) brief = tf_study_run (study, t.ledger, NULL);
+      g_autoptr (TfFindings) whole = run_whole (&t, hints);
+      g_assert_cmpuint (brief->n_marks, ==, 3 * 72);
+      compare (brief, whole);
+      g_autoptr (TfNotes) wrong = tf_notes_new ();
+      g_assert_true (tf_ledger_check (t.ledger, wrong, NULL));
+      g_assert_cmpuint (tf_notes_get_n (wrong), ==, 0);
+    }
+}
+
+void
+test_study_add_take (void)
+{
+  g_test_add_func ("/study/take/briefs-say-what-whole-rows-say", test_briefs);
+}
