@@ -3,6 +3,7 @@
  */
 #include "tf-actions-follow.h"
 
+#include <math.h>
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
@@ -65,9 +66,10 @@ ACTION (to_mark)
 typedef struct
 {
   GtkWidget *reason, *passages;
-  guint offer;
+  TfSight sight; /* that the cut is before */
+  TfReturnOffer offer;
   gboolean same;
-} Question;
+} Question; /* of what was in view when it was asked, whatever is read meanwhile */
 
 static void
 say_refused (TfWindow *window)
@@ -116,12 +118,28 @@ has_person (gpointer window, GSimpleAction *action)
   return FALSE;
 }
 
+static TfSight
+sight_in_view (TfFollowed *followed)
+{
+  g_autoptr (TfLookItem) item = g_list_model_get_item (
+      tf_followed_get_looks (followed), (guint)MAX (tf_followed_get_now (followed), 0));
+  const TfLookSpec *spec = item != NULL ? tf_look_item_get_spec (item) : NULL;
+  return spec != NULL ? (TfSight){ spec->mark, spec->is_hint } : (TfSight){ 0 };
+}
+
+static gboolean
+cut_asked (TfFollowed *followed, const Question *q)
+{
+  TfSight now = sight_in_view (followed);
+  return now.mark == q->sight.mark && now.is_hint == q->sight.is_hint
+         && tf_followed_cut (followed, gtk_editable_get_text (GTK_EDITABLE (q->reason)));
+}
+
 static void
 cut_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *window)
 {
   Question *q = answer_of (dialog, answer);
-  if (q != NULL
-      && !tf_followed_cut (followed_of (window), gtk_editable_get_text (GTK_EDITABLE (q->reason))))
+  if (q != NULL && !cut_asked (followed_of (window), q))
     say_refused (window);
 }
 
@@ -141,6 +159,7 @@ ACTION (cut)
                            _ ("This outline and those after it become another region. The journal "
                               "keeps who said so; Ctrl+Z takes it back."),
                            _ ("_Cut"), &q);
+  q->sight = sight_in_view (followed);
   g_signal_connect_object (dialog, "response", G_CALLBACK (cut_answered), window, 0);
   gtk_window_present (GTK_WINDOW (dialog));
   gtk_widget_grab_focus (q->reason);
@@ -159,22 +178,57 @@ join_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *window)
     say_refused (window);
 }
 
-static gboolean
-is_another (gpointer item, gpointer followed)
+/* As they are now: a list that changed under the hand would join what nobody chose. */
+static GListModel *
+list_others (TfFollowed *followed)
 {
-  return tf_passage_item_get_row (item)->id != tf_followed_get_chosen (followed);
+  GListModel *all = tf_followed_get_passages (followed);
+  GListStore *others = g_list_store_new (TF_TYPE_PASSAGE_ITEM);
+  for (guint k = 0; k < g_list_model_get_n_items (all); k++)
+    {
+      g_autoptr (TfPassageItem) item = g_list_model_get_item (all, k);
+      if (tf_passage_item_get_row (item)->id != tf_followed_get_chosen (followed))
+        g_list_store_append (others, item);
+    }
+  return G_LIST_MODEL (others);
+}
+
+/* Hours between two passages; those that overlap in time are seldom one. */
+static double
+gap_between (const TfPassageRow *a, const TfPassageRow *b)
+{
+  double gap = fmax (b->first_time.s - a->last_time.s, a->first_time.s - b->last_time.s);
+  return gap > 0 ? gap : HUGE_VAL;
+}
+
+/* The one that ends where this begins, or begins where this ends, is offered first. */
+static guint
+find_nearest (TfFollowed *followed, GListModel *others)
+{
+  const TfPassageRow *here = tf_followed_get_content (followed)->passage;
+  guint nearest = 0, n = g_list_model_get_n_items (others);
+  double least = HUGE_VAL;
+  for (guint k = 0; k < n; k++)
+    {
+      g_autoptr (TfPassageItem) item = g_list_model_get_item (others, k);
+      double gap = gap_between (here, tf_passage_item_get_row (item));
+      if (gap < least)
+        {
+          least = gap;
+          nearest = k;
+        }
+    }
+  return nearest;
 }
 
 static GtkWidget *
 other_passages (TfFollowed *followed)
 {
-  GtkFilter *filter
-      = GTK_FILTER (gtk_custom_filter_new (is_another, g_object_ref (followed), g_object_unref));
-  GListModel *others = G_LIST_MODEL (gtk_filter_list_model_new (
-      g_object_ref (tf_followed_get_passages (followed)), filter));
+  GListModel *others = list_others (followed);
   GtkWidget *choice = gtk_drop_down_new (
       others, gtk_property_expression_new (TF_TYPE_PASSAGE_ITEM, NULL, "words"));
   gtk_drop_down_set_enable_search (GTK_DROP_DOWN (choice), TRUE);
+  gtk_drop_down_set_selected (GTK_DROP_DOWN (choice), find_nearest (followed, others));
   gtk_accessible_update_property (GTK_ACCESSIBLE (choice), GTK_ACCESSIBLE_PROPERTY_LABEL,
                                   _ ("The other passage"), -1);
   return choice;
@@ -215,11 +269,8 @@ static void
 offer_answered (AdwMessageDialog *dialog, const char *answer, TfWindow *window)
 {
   Question *q = answer_of (dialog, answer);
-  if (q == NULL)
-    return;
-  const TfReturnOffer *offer = offer_at (followed_of (window), q->offer);
-  if (offer == NULL
-      || !tf_followed_answer (followed_of (window), offer, q->same,
+  if (q != NULL
+      && !tf_followed_answer (followed_of (window), &q->offer, q->same,
                               gtk_editable_get_text (GTK_EDITABLE (q->reason))))
     say_refused (window);
 }
@@ -230,14 +281,15 @@ ACTION (answer)
   gboolean same;
   Question *q;
   g_variant_get (value, "(ub)", &at, &same);
-  if (offer_at (followed_of (window), at) == NULL || !has_person (window, action))
+  const TfReturnOffer *offer = offer_at (followed_of (window), at);
+  if (offer == NULL || !has_person (window, action))
     return;
   GtkWidget *dialog
       = ask (window, same ? _ ("The same region, come round?") : _ ("Not the same region?"),
              _ ("A lineage is made by a person's word alone. The journal keeps who said so; Ctrl+Z takes "
                 "it back."),
              same ? _ ("_Same region") : _ ("_Not the same"), &q);
-  q->offer = at;
+  q->offer = *offer;
   q->same = same;
   g_signal_connect_object (dialog, "response", G_CALLBACK (offer_answered), window, 0);
   gtk_window_present (GTK_WINDOW (dialog));
@@ -328,21 +380,27 @@ update (TfWindow *window)
              g_variant_new_string (take_names[tf_followed_get_take (followed)]));
 }
 
-/* What is chosen on Mark or on the wings is what Follow shows. */
+/* What is chosen on Mark or on the wings is what Follow shows; the same choice read again changes
+ * nothing there. */
 static void
 choice_changed (TfWindow *window)
 {
   TfRegionItem *region = tf_session_get_region (tf_window_get_session (window));
-  if (region == NULL)
+  const TfRow *row = region != NULL ? tf_region_item_get_row (region) : NULL;
+  TfSight sight = row != NULL ? (TfSight){ row->mark, row->is_hint } : (TfSight){ 0 };
+  TfSight *last = g_object_get_data (G_OBJECT (window), "followed-choice");
+  if (sight.mark == last->mark && sight.is_hint == last->is_hint)
     return;
-  const TfRow *row = tf_region_item_get_row (region);
-  tf_followed_choose_sight (followed_of (window), (TfSight){ row->mark, row->is_hint });
+  *last = sight;
+  if (sight.mark != 0)
+    tf_followed_choose_sight (followed_of (window), sight);
 }
 
 void
 tf_window_add_follow_actions (TfWindow *window, TfFollowed *followed)
 {
   g_object_set_data_full (G_OBJECT (window), "followed", g_object_ref (followed), g_object_unref);
+  g_object_set_data_full (G_OBJECT (window), "followed-choice", g_new0 (TfSight, 1), g_free);
   g_action_map_add_action_entries (G_ACTION_MAP (window), entries, G_N_ELEMENTS (entries), window);
   g_signal_connect_object (followed, "moment-changed", G_CALLBACK (update), window,
                            G_CONNECT_SWAPPED);

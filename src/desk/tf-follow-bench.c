@@ -10,6 +10,7 @@
 #include "tf-followed-private.h"
 #include "tf-look-view.h"
 #include "tf-series-view.h"
+#include "tf-slip-words.h"
 #include "tf-widget-style.h"
 
 struct _TfFollowBench
@@ -216,7 +217,7 @@ other_row (const TfPassageContent *content, gint64 id)
 static GtkWidget *
 button_new (const char *label, const char *action, GVariant *target)
 {
-  GtkWidget *button = gtk_button_new_with_mnemonic (label);
+  GtkWidget *button = gtk_button_new_with_label (label);
   gtk_actionable_set_action_name (GTK_ACTIONABLE (button), action);
   gtk_actionable_set_action_target_value (GTK_ACTIONABLE (button), target);
   return button;
@@ -231,13 +232,15 @@ add_offer (TfFollowBench *self, const TfPassageContent *content, guint at)
   if (row == NULL)
     return;
   g_autofree char *name = tf_passage_dup_name (row), *day = tf_series_chart_dup_day (row->first_time);
+  g_autofree char *lon = tf_words_dup_signed (offer->lon_deg, 1),
+                  *lat = tf_words_dup_signed (offer->lat_deg, 1);
   g_autofree char *text = g_strdup_printf (
       id == offer->later
-          ? _ ("May come back as %s on %s: %+.1f° in longitude, %+.1f° in latitude from its carried "
+          ? _ ("May come back as %s on %s: %s° in longitude, %s° in latitude from its carried "
                "place.")
-          : _ ("May be the return of %s, first seen %s: %+.1f° in longitude, %+.1f° in latitude from "
+          : _ ("May be the return of %s, first seen %s: %s° in longitude, %s° in latitude from "
                "its carried place."),
-      name, day, offer->lon_deg, offer->lat_deg);
+      name, day, lon, lat);
   GtkWidget *words = label_new (text, TRUE), *buttons = gtk_box_new (GTK_ORIENTATION_HORIZONTAL, 6);
   gtk_label_set_max_width_chars (GTK_LABEL (words), 30);
   gtk_box_append (GTK_BOX (buttons),

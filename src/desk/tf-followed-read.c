@@ -18,6 +18,7 @@ typedef struct
   guint serial;
   gint64 passage, beside;
   TfSight sight;
+  int now; /* the look in view then */
   gboolean writable;
   /* brought */
   GPtrArray *passages;
@@ -196,11 +197,24 @@ time_now (TfFollowed *self)
   return item != NULL ? tf_look_item_get_spec (item)->time : TF_TIME_UNKNOWN;
 }
 
+/* What is in view stays in view, in whatever passage it then lies. */
+static TfSight
+sight_now (TfFollowed *self)
+{
+  g_autoptr (TfLookItem) item
+      = self->now < 0 ? NULL
+                      : g_list_model_get_item (G_LIST_MODEL (self->looks), (guint)self->now);
+  const TfLookSpec *spec = item != NULL ? tf_look_item_get_spec (item) : NULL;
+  return spec != NULL ? (TfSight){ spec->mark, spec->is_hint } : (TfSight){ 0 };
+}
+
 static void
 take (TfFollowed *self, Reading *r)
 {
   gint64 before = tf_followed_get_chosen (self);
   TfTime time = time_now (self);
+  /* Who stepped on while it was read is not thrown back. */
+  TfSight sight = self->now != r->now && self->now >= 0 ? sight_now (self) : r->sight;
   g_cancellable_cancel (self->drawing);
   g_clear_object (&self->drawing);
   self->drawing = g_cancellable_new ();
@@ -215,7 +229,7 @@ take (TfFollowed *self, Reading *r)
   take_looks (self->looks, self->content);
   take_looks (self->beside_looks, self->beside);
   self->taking = FALSE;
-  self->now = find_now (self, before, time, r->sight);
+  self->now = find_now (self, before, time, sight);
   if (before != self->want)
     self->from = self->to = TF_TIME_UNKNOWN;
   tf_followed_derive (self);
@@ -341,23 +355,13 @@ start_reading (TfFollowed *self)
   asked->serial = ++self->serial;
   asked->passage = self->want;
   asked->sight = self->want_sight;
+  asked->now = self->now;
   asked->beside = self->want_beside;
   asked->writable = tf_session_is_writable (self->session);
   self->reading++;
   tf_lane_push (self->lane, self, self->cancellable, read_in_lane, asked, reading_free,
                 reading_free, read_done, NULL);
   tf_followed_emit (self, TF_FOLLOWED_BUSY);
-}
-
-/* What is in view stays in view, in whatever passage it then lies. */
-static TfSight
-sight_now (TfFollowed *self)
-{
-  g_autoptr (TfLookItem) item
-      = self->now < 0 ? NULL
-                      : g_list_model_get_item (G_LIST_MODEL (self->looks), (guint)self->now);
-  const TfLookSpec *spec = item != NULL ? tf_look_item_get_spec (item) : NULL;
-  return spec != NULL ? (TfSight){ spec->mark, spec->is_hint } : (TfSight){ 0 };
 }
 
 static void

@@ -6,6 +6,7 @@
 
 #include "tf-ledger-private.h"
 
+#include <math.h>
 #include <string.h>
 
 #include "tf-json.h"
@@ -60,7 +61,7 @@ body_of (TfLedger *ledger, gint64 replica, gint64 seq, char **kind)
 static char *
 text_of (JsonObject *body)
 {
-  static const char *const keys[] = { "text", "class", "name" };
+  static const char *const keys[] = { "text", "class", "name", "reason" };
   for (guint k = 0; k < G_N_ELEMENTS (keys); k++)
     {
       g_autofree char *text = member (body, keys[k]);
@@ -70,16 +71,45 @@ text_of (JsonObject *body)
   return g_strdup ("");
 }
 
+/* A link or cut is about its later sighting, and the region either of its marks has. */
+static void
+fill_tie (TfLedger *ledger, JsonObject *body, TfActAbout *about)
+{
+  g_autofree char *a = member (body, "a"), *b = member (body, "b");
+  const char *const ids[] = { a, b };
+  double latest = -HUGE_VAL;
+  for (guint k = 0; k < G_N_ELEMENTS (ids); k++)
+    {
+      gboolean hint = strlen (ids[k]) == TF_CID_HEX;
+      g_autoptr (sqlite3_stmt) query = tf_query (
+          ledger, NULL,
+          hint ? "SELECT f.id, coalesce (f.time, 0), '' FROM hint h JOIN frame f ON f.id = h.frame WHERE h.cid = ?1"
+               : "SELECT f.id, coalesce (f.time, 0), g.number FROM mark m JOIN frame f ON f.id = m.frame JOIN region g ON g.id = m.region WHERE m.uid = ?1",
+          "h", ids[k]);
+      if (query == NULL || tf_query_step (ledger, query, NULL) <= 0)
+        continue;
+      if (sqlite3_column_double (query, 1) > latest)
+        {
+          latest = sqlite3_column_double (query, 1);
+          about->frame = sqlite3_column_int64 (query, 0);
+        }
+      if (about->region == NULL && !hint)
+        about->region = g_strdup (tf_column_text (query, 2));
+    }
+}
+
 static void
 fill_about (TfLedger *ledger, JsonObject *body, TfActAbout *about)
 {
-  g_autofree char *region = member (body, "region");
+  g_autofree char *region = member (body, "region"), *tied = member (body, "b");
   about->as = member (body, "as");
   about->text = text_of (body);
   about->frame = frame_of (ledger, body);
   if (strlen (region) == TF_ID_HEX)
     about->region
         = tf_text_value (ledger, NULL, "SELECT number FROM region WHERE uid = ?1", "h", region);
+  if (*tied != '\0')
+    fill_tie (ledger, body, about);
   if (about->region == NULL)
     about->region = g_strdup ("");
   if (about->frame != 0)
