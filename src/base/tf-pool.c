@@ -3,6 +3,7 @@
  */
 #include "tf-pool.h"
 
+#include <malloc.h>
 #include <stdlib.h>
 #include <sys/mman.h>
 
@@ -10,6 +11,8 @@ enum
 {
   HUGE_PAGE = 2 << 20,
   KEEP = 4, /* idle buffers kept by a pool */
+  HEAP_MOST = 16 << 20, /* larger room is asked of the system and given back to it */
+  HEAP_KEPT = 64 << 20,
 };
 
 struct _TfPool
@@ -163,4 +166,14 @@ gsize
 tf_pixels_get_n (const TfPixels *pixels)
 {
   return pixels->n;
+}
+
+void
+tf_heap_keep (void)
+{
+#ifdef M_ARENA_MAX
+  mallopt (M_ARENA_MAX, 1); /* what one thread gives back another can use */
+#endif
+  mallopt (M_MMAP_THRESHOLD, HEAP_MOST);
+  mallopt (M_TRIM_THRESHOLD, HEAP_KEPT);
 }

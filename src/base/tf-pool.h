@@ -33,6 +33,10 @@ void tf_pixels_unref (TfPixels *pixels);
 float *tf_pixels_get (const TfPixels *pixels);
 gsize tf_pixels_get_n (const TfPixels *pixels);
 
+/** tf_heap_keep: once, as a program begins: smaller room that is given back stays with the process and is handed out again, as a fresh
+ * page costs more than most of what is done with it. Frames are not among it. */
+void tf_heap_keep (void);
+
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPool, tf_pool_unref)
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPixels, tf_pixels_unref)
 

@@ -10,6 +10,7 @@
 #include <gsl/gsl_errno.h>
 
 #include "tf-batch.h"
+#include "tf-pool.h"
 
 const TfVerb tf_verbs[] = {
   { "inspect", "FRAME…", N_ ("Says what a frame is: kind, role, time, observer, geometry, noise, repairs; or why it is refused."),
@@ -57,6 +58,7 @@ print_verbs (FILE *to)
 int
 main (int argc, char **argv)
 {
+  tf_heap_keep ();
   setlocale (LC_ALL, "");
   bindtextdomain (GETTEXT_PACKAGE, TF_LOCALE_DIR);
   bind_textdomain_codeset (GETTEXT_PACKAGE, "UTF-8");

@@ -101,6 +101,8 @@ open_in_thread (GTask *task, gpointer source, gpointer data, GCancellable *cance
   GError *error = NULL;
   g_autoptr (TfFrame) frame
       = tf_frame_open (request->path, &request->spec, &request->work, &error);
+  if (frame != NULL)
+    tf_frame_get_level (frame, 1, NULL, NULL); /* here, not while it is drawn */
   /* what cannot be corrected is shown as its header has it */
   TfFrame *seen
       = frame != NULL ? tf_frame_corrected (frame, &request->correction, &request->work) : NULL;

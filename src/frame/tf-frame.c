@@ -19,6 +19,7 @@ struct _TfFrame
   int hdu;
   TfNoise noise;
   TfPyramid pyramid;
+  gsize first_filled; /* whether its level 1 is; by g_once_init_enter */
 };
 
 G_DEFINE_QUARK (tf - frame - error, tf_frame_error)
@@ -91,7 +92,9 @@ tf_frame_with_geometry (const TfFrame *frame, const TfGeometry *geometry, const 
   other->pixels = tf_pixels_ref (frame->pixels);
   other->path = g_strdup (frame->path);
   other->hdu = frame->hdu;
+  tf_frame_get_level (frame, 1, NULL, NULL); /* the two share its memory */
   other->pyramid = frame->pyramid;
+  other->first_filled = 1;
   for (guint k = 0; k < other->pyramid.n; k++)
     tf_pixels_ref (other->pyramid.levels[k].pixels);
   other->noise.correlation = 1;
@@ -202,11 +205,30 @@ tf_frame_noise_correlation (const TfFrame *frame)
   return frame->noise.correlation;
 }
 
+guint
+tf_frame_get_n_levels (const TfFrame *frame)
+{
+  return frame->pyramid.n;
+}
+
+/* Seen from outside it was there all along. */
+static void
+need_first (const TfFrame *frame)
+{
+  gsize *filled = (gsize *)&frame->first_filled;
+  if (!g_once_init_enter (filled))
+    return;
+  tf_pyramid_fill_first (&frame->pyramid, tf_pixels_get (frame->pixels));
+  g_once_init_leave (filled, 1);
+}
+
 const float *
 tf_frame_get_level (const TfFrame *frame, guint level, guint *width, guint *height)
 {
   if (level > frame->pyramid.n)
     return NULL;
+  if (level == 1)
+    need_first (frame);
   const TfGeometry *g = &frame->info->geometry;
   TfLevel zero = { frame->pixels, g->width, g->height };
   const TfLevel *l = level == 0 ? &zero : &frame->pyramid.levels[level - 1];

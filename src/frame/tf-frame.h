@@ -92,8 +92,10 @@ double tf_frame_noise_at (const TfFrame *frame, double mu);
 double tf_frame_noise_correlation (const TfFrame *frame);
 
 /* -- pyramid --------------------------------------------------------------------------------- */
+/** tf_frame_get_n_levels: of the last level. */
+guint tf_frame_get_n_levels (const TfFrame *frame);
 /** tf_frame_get_level: box means (NaN-aware) of 2^level pixels a side; level 0 is the frame.
- * NULL past the last. */
+ * NULL past the last. Level 1 is made by whoever asks for it first: a pass over the pixels. */
 const float *tf_frame_get_level (const TfFrame *frame, guint level, guint *width, guint *height);
 
 /* -- checksum -------------------------------------------------------------------------------- */

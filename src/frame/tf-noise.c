@@ -272,7 +272,7 @@ fill_part (guint band, guint first, guint n, guint worker, gpointer data)
   g_autofree double *sum = g_new0 (double, sample->g->width + 1);
   g_autofree guint *count = g_new0 (guint, sample->g->width + 1);
   for (guint k = 0; k < TF_NOISE_RINGS; k++)
-    rings->pixels[k] = g_array_new (FALSE, FALSE, sizeof (Pixel));
+    rings->pixels[k] = g_array_sized_new (FALSE, FALSE, sizeof (Pixel), WANTED / PARTS / TF_NOISE_RINGS);
   for (guint k = rows * band / PARTS; k < rows * (band + 1) / PARTS; k++)
     rings_add_row (rings, sample, k, step / 2 + k * step, &(Row){ mu, sum, count });
 }

@@ -52,7 +52,7 @@ level_of_a_degree (const TfFrame *frame)
 {
   double size = tf_geometry_disk_radius (tf_frame_get_geometry (frame)) * TF_DEG;
   guint level = 0;
-  while (size > 1.42 && tf_frame_get_level (frame, level + 1, NULL, NULL) != NULL)
+  while (size > 1.42 && level < tf_frame_get_n_levels (frame))
     {
       size /= 2;
       level++;

@@ -389,16 +389,15 @@ choose_level (const TfFrame *frame, Render *r)
 {
   double coarse = coarseness (r->view, r->geometry);
   guint level = 0;
-  r->data = tf_frame_get_level (frame, 0, &r->width, &r->height);
   r->nearest = coarse < 0.5;
   for (r->shrink = 1; r->shrink * 1.42 < coarse;
        r->shrink *= 2) /* drawn at 0.7 to 1.4 of the level's own size */
     {
-      const float *next = tf_frame_get_level (frame, level + 1, NULL, NULL);
-      if (next == NULL)
+      if (level == tf_frame_get_n_levels (frame))
         break;
-      r->data = tf_frame_get_level (frame, ++level, &r->width, &r->height);
+      level++;
     }
+  r->data = tf_frame_get_level (frame, level, &r->width, &r->height);
 }
 
 gboolean

@@ -20,7 +20,8 @@ typedef struct
   guint width, height;
 } TfLevel;
 
-/** TfPyramid: made band by band, while a band's pixels are still in the processor's cache. */
+/** TfPyramid: made band by band, while a band's pixels are still in the processor's cache. Level 1, as large as all others
+ * three times over, is only passed through; who wants it fills it. */
 typedef struct
 {
   TfLevel levels[TF_MAX_LEVELS]; /* [0] is level 1 */
@@ -40,6 +41,8 @@ void tf_pyramid_add_band (TfPyramid *pyramid, const float *pixels, guint first, 
                           guint worker);
 /** tf_pyramid_close: what lies above the bands, once all were added; the room is given back. */
 void tf_pyramid_close (TfPyramid *pyramid);
+/** tf_pyramid_fill_first: level 1, from the same pixels. */
+void tf_pyramid_fill_first (const TfPyramid *pyramid, const float *pixels);
 /** tf_pyramid_make: open, all bands, close. */
 void tf_pyramid_make (TfPyramid *pyramid, const float *pixels, guint width, guint height,
                       const TfWork *work);

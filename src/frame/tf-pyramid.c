@@ -126,7 +126,7 @@ tf_pyramid_open (TfPyramid *pyramid, guint width, guint height, const TfWork *wo
       pyramid->levels[pyramid->n++] = (TfLevel){ pixels, w, h };
     }
   pyramid->n_workers = tf_workers_get_n (work != NULL ? work->workers : NULL);
-  pyramid->room_size = (TF_BAND_ROWS / 2) * row_half (width, 1) + (TF_BAND_ROWS / 4) * row_half (width, 2);
+  pyramid->room_size = TF_BAND_ROWS * row_half (width, 1) + (TF_BAND_ROWS / 4) * row_half (width, 2);
   pyramid->room = g_new (float, pyramid->room_size * pyramid->n_workers);
   if (pyramid->n >= BAND_LEVELS)
     {
@@ -138,7 +138,8 @@ tf_pyramid_open (TfPyramid *pyramid, guint width, guint height, const TfWork *wo
 void
 tf_pyramid_add_band (TfPyramid *pyramid, const float *pixels, guint first, guint n, guint worker)
 {
-  float *even = pyramid->room + worker * pyramid->room_size;
+  float *first_level = pyramid->room + worker * pyramid->room_size;
+  float *even = first_level + (TF_BAND_ROWS / 2) * row_half (pyramid->width, 1);
   float *odd = even + (TF_BAND_ROWS / 2) * row_half (pyramid->width, 1);
   Step step = { .below = pixels + (gsize)first * pyramid->width,
                 .below_width = pyramid->width,
@@ -147,11 +148,28 @@ tf_pyramid_add_band (TfPyramid *pyramid, const float *pixels, guint first, guint
     {
       const TfLevel *level = &pyramid->levels[k];
       gsize at = (gsize)(first >> (k + 1)) * level->width;
-      step.mean = tf_pixels_get (level->pixels) + at;
+      step.mean = k == 0 ? first_level : tf_pixels_get (level->pixels) + at;
       step.weight = k + 1 == BAND_LEVELS ? pyramid->weight + at : k % 2 == 0 ? even : odd;
       step.width = level->width;
       step_rows (&step);
       step_up (&step);
+    }
+}
+
+void
+tf_pyramid_fill_first (const TfPyramid *pyramid, const float *pixels)
+{
+  const TfLevel *level = &pyramid->levels[0];
+  g_autofree float *weight = g_new (float, (TF_BAND_ROWS / 2) * row_half (pyramid->width, 1));
+  for (guint first = 0; first < pyramid->height; first += TF_BAND_ROWS)
+    {
+      Step step = { .below = pixels + (gsize)first * pyramid->width,
+                    .below_width = pyramid->width,
+                    .below_height = MIN (TF_BAND_ROWS, pyramid->height - first),
+                    .mean = tf_pixels_get (level->pixels) + (gsize)(first / 2) * level->width,
+                    .weight = weight,
+                    .width = level->width };
+      step_rows (&step);
     }
 }
 

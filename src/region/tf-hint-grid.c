@@ -146,7 +146,7 @@ choose_level (Pass *pass, const TfFrame *frame, double cell_mm)
   const TfGeometry *g = tf_frame_get_geometry (frame);
   double pixel_mm = tf_geometry_scale_arcsec (g) * TF_ARCSEC * (g->distance_mm - g->radius_mm);
   guint level = 0;
-  while (pixel_mm * 2.0 < FINE * cell_mm && tf_frame_get_level (frame, level + 1, NULL, NULL) != NULL)
+  while (pixel_mm * 2.0 < FINE * cell_mm && level < tf_frame_get_n_levels (frame))
     {
       pixel_mm *= 2.0;
       level++;

@@ -104,9 +104,8 @@ choose_level (Level *level, const TfFrame *frame, double sigma_mm)
   double pixel = tf_geometry_is_map (g)
                      ? (double)INFINITY
                      : tf_geometry_scale_arcsec (g) * TF_ARCSEC * (g->distance_mm - g->radius_mm);
-  guint at = 0, w, h;
-  while (pixel * (2 << at) <= LEVEL_SHARE * sigma_mm
-         && tf_frame_get_level (frame, at + 1, &w, &h) != NULL)
+  guint at = 0;
+  while (pixel * (2 << at) <= LEVEL_SHARE * sigma_mm && at < tf_frame_get_n_levels (frame))
     at++;
   level->level = at;
   level->pixels = tf_frame_get_level (frame, at, &level->width, &level->height);
