@@ -83,6 +83,8 @@ const TfNoteKind tf_note_kinds_laws[] = {
   { "minimum-provisional", TF_NOTE_CAUTION,
     N_ ("The next minimum is provisional: {0:.1f}, entered by a person; {1} of the picks lean on "
         "it.") },
+  { "outside-rows", TF_NOTE_CAUTION,
+    N_ ("{0} of the rows came in tables from elsewhere and were not measured here: {1}.") },
   { "peak-not-bracketed", TF_NOTE_CAUTION,
     N_ ("Peak not bracketed: of {0} of the {1} picks the greatest flux is the first or the last "
         "mark, so that it may have been greater still when nobody looked.") },

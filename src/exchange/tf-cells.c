@@ -115,7 +115,12 @@ tf_fault_add (GArray *faults, guint place, const char *column, const char *value
 void
 tf_export_fail_read (GError **error, const char *name, const char *reason)
 {
-  g_set_error (error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_READ, "%s: %s", name, reason);
+  /* One line of text, whatever names and cells of somebody's file stand in it. */
+  g_autofree char *line = g_utf8_make_valid (reason, -1);
+  for (char *p = line; *p != '\0'; p++)
+    if ((guchar)*p < 0x20)
+      *p = ' ';
+  g_set_error (error, TF_EXCHANGE_ERROR, TF_EXCHANGE_ERROR_READ, "%s: %s", name, line);
 }
 
 gboolean

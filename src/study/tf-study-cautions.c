@@ -50,6 +50,35 @@ note_scales (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows
     tf_notes_add (findings->cautions, "instruments-scaled", "s", names->str);
 }
 
+/* Where the rows of tables among the picks are from, and their licences. */
+static void
+note_outside (TfFindings *findings, const TfStudyRows *rows)
+{
+  g_autoptr (GPtrArray) sources = g_ptr_array_new_with_free_func (g_free);
+  const char *last[2] = { NULL, NULL };
+  guint n = 0;
+  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
+    {
+      TfStudyFact fact = tf_study_fact (rows, tf_sample_get (findings->sample, k)->row);
+      if (!fact.outside || fact.source == NULL)
+        continue;
+      n++;
+      if (g_strcmp0 (fact.source, last[0]) == 0 && g_strcmp0 (fact.licence, last[1]) == 0)
+        continue;
+      last[0] = fact.source;
+      last[1] = fact.licence;
+      gboolean bare = fact.licence == NULL || *fact.licence == '\0';
+      g_autofree char *source = bare ? g_strdup (fact.source) : g_strdup_printf ("%s (%s)", fact.source, fact.licence);
+      if (!g_ptr_array_find_with_equal_func (sources, source, g_str_equal, NULL))
+        g_ptr_array_add (sources, g_steal_pointer (&source));
+    }
+  if (n == 0)
+    return;
+  g_ptr_array_add (sources, NULL);
+  g_autofree char *names = g_strjoinv ("; ", (char **)sources->pdata);
+  tf_notes_add (findings->cautions, "outside-rows", "is", (int)n, names);
+}
+
 /* While nothing is linked, or as far as picks lie at an end of what was seen of them. */
 static void
 note_sampling (TfFindings *findings, const TfStudy *study)
@@ -111,6 +140,7 @@ tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudy
   note_sampling (findings, study);
   if (findings->n_hints > 0)
     tf_notes_add (cautions, "hints-counted", "ii", (int)findings->n_hints, (int)findings->n_marks);
+  note_outside (findings, rows);
   note_instruments (findings, study, rows);
   note_scales (findings, study, rows);
   note_divides (cautions, study);

@@ -14,6 +14,7 @@ typedef struct
 {
   gint64 mark;            /* local key; of a hint negative; of an outside row 0 */
   const char *instrument; /* borrowed of the rows, or interned; NULL: not known */
+  const char *source, *licence; /* likewise, of an outside row */
   double floor_gauss;
   gint8 even; /* the floor is an even one */
   gint8 is_hint, unipolar, model_map, simulated, outside;

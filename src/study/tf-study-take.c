@@ -20,6 +20,8 @@ tf_study_fact_of_row (const TfRow *row)
 {
   return (TfStudyFact){ .mark = row->outside != NULL ? 0 : row->is_hint ? -row->mark : row->mark,
                         .instrument = row->instrument,
+                        .source = row->outside != NULL ? row->outside->source : NULL,
+                        .licence = row->outside != NULL ? row->outside->licence : NULL,
                         .floor_gauss = row->measure.floor_gauss,
                         .even = row->measure.floor_kind == TF_FLOOR_EVEN,
                         .is_hint = row->is_hint != FALSE,
@@ -151,6 +153,8 @@ take_sources (TfStudyTaken *taken, const Sources *s)
           tf_study_row (outside, &row);
           fact = tf_study_fact_of_row (outside);
           fact.instrument = g_intern_string (fact.instrument); /* the row goes */
+          fact.source = g_intern_string (fact.source);
+          fact.licence = g_intern_string (fact.licence);
         }
       else
         take_brief (s, &s->briefs[at < s->n_marks ? at : at - s->outside->len], &measure, &row, &fact);

@@ -101,7 +101,7 @@ static void
 add_conditions (GString *out, const TfFindings *findings)
 {
   static const char *const codes[]
-      = { "instruments-unscaled-pooled", "instruments-scaled", "divides-moved", "divides-shown",
+      = { "outside-rows",                "instruments-unscaled-pooled", "instruments-scaled", "divides-moved", "divides-shown",
           "minimum-provisional",         "rows-simulated" };
   for (guint k = 0; k < G_N_ELEMENTS (codes); k++)
     {
@@ -119,10 +119,16 @@ tf_findings_dup_words (const TfFindings *findings, const TfStudy *study)
                                        N_ ("the mark of each passage nearest the central meridian"),
                                        N_ ("the mean of each passage's marks"), N_ ("every mark") };
   GString *out = g_string_new (NULL);
-  g_string_append_printf (
-      out, _ ("Sample: %u picks, %s, from %u marks and %u hints of %u regions.\n"),
-      tf_sample_get_n (findings->sample), _ (rules[study->sampling.rule]), findings->n_marks,
-      findings->n_hints, findings->regions);
+  guint picks = tf_sample_get_n (findings->sample);
+  const char *rule = _ (rules[study->sampling.rule]);
+  if (findings->n_outside > 0)
+    g_string_append_printf (
+        out, _ ("Sample: %u picks, %s, from %u marks, %u hints and %u outside rows of %u regions.\n"),
+        picks, rule, findings->n_marks, findings->n_hints, findings->n_outside, findings->regions);
+  else
+    g_string_append_printf (out,
+                            _ ("Sample: %u picks, %s, from %u marks and %u hints of %u regions.\n"),
+                            picks, rule, findings->n_marks, findings->n_hints, findings->regions);
   if (isfinite (findings->even_floor_gauss))
     g_string_append_printf (out,
                             _ ("Marks within %.0f° of the central meridian, even floor %.1f G.\n"),

@@ -3,6 +3,7 @@
 The keys are those of the command reference that scripts rely on; what the numbers should be is checked in tests/outside.
 """
 import csv
+import functools
 import glob
 import json
 import math
@@ -14,6 +15,7 @@ import subprocess
 import sys
 import tempfile
 import time
+import zipfile
 
 RUN, TOP = sys.argv[1], sys.argv[2]
 FRAMES = os.path.join(TOP, "data-demo", "frames")
@@ -88,11 +90,19 @@ def demo(name="*"):
     return frames
 
 
+@functools.lru_cache
+def looks():
+    """What inspect says of every demo frame."""
+    return document("inspect", "--json", *demo())
+
+
 def first_disk():
-    for path in demo():
-        if document("inspect", "--json", path)[0]["kind"] == "disk":
-            return path
-    raise AssertionError("no disk among the demo frames")
+    return next(look["file"] for look in looks() if look["kind"] == "disk")
+
+
+def few():
+    """Six frames on which regions are followed: as good as all where it is about how a ledger is filled."""
+    return demo("brindle-201310[01]?-0600")[:6]
 
 
 @test("with no verb it lists the verbs and exits 2; --help exits 0; every verb has help with an example")
@@ -129,7 +139,7 @@ def _():
 
 @test("inspect gives every key for every demo frame, and a refused frame is an answer")
 def _():
-    found = document("inspect", "--json", *demo())
+    found = looks()
     assert len(found) == len(demo())
     for frame in found:
         has(frame, INSPECT)
@@ -293,16 +303,16 @@ def _():
 
 @test("a companion intensity frame gives spots and the third witness, and one of another time is refused in words")
 def _():
-    looks = document("inspect", "--json", *demo())
-    bright = [look for look in looks if look["role"] == "intensity"]
+    bright = [look for look in looks() if look["role"] == "intensity"]
     assert bright, "no intensity frame among the demo frames"
     when = bright[0]["time"][:16]
-    field = [look for look in looks if look["role"] == "field" and look["kind"] == "disk" and look["time"][:16] == when]
+    field = [look for look in looks() if look["role"] == "field" and look["kind"] == "disk" and look["time"][:16] == when]
     far = [look for look in field if abs(look["observer"]["stonyhurst_lon_deg"]) > 2]
     field = [look for look in field if look not in far]
-    other = [look for look in looks if look["role"] == "field" and look["kind"] == "disk" and look["time"][:10] != when[:10]]
+    other = [look for look in looks() if look["role"] == "field" and look["kind"] == "disk" and look["time"][:10] != when[:10]]
     assert field and other and far
     hints = [h for h in document("hints", "--json", field[0]["file"])[0]["hints"] if h["kind"] == "bipole"]
+    hints = sorted(hints, key=lambda h: -h["measure"]["flux_unsigned_mx"])[:4]
     found = 0
     for hint in hints:
         outline = os.path.join(work, "companion-outline.json")
@@ -351,23 +361,24 @@ def _():
         return sorted(found)
     parts = [os.path.join(work, f"part{k}.ledger") for k in (1, 2)]
     for k, ledger in enumerate(parts, 1):
-        call("fill", ledger, FRAMES, "--part", f"{k}/2")
-    assert rows(*parts) == rows(os.path.join(work, "one.ledger"))
+        call("fill", ledger, *few(), "--part", f"{k}/2")
+    call("fill", os.path.join(work, "few.ledger"), *few())
+    assert rows(*parts) == rows(os.path.join(work, "few.ledger"))
 
 
 @test("a fill stopped by Ctrl-C can be taken up again and ends the same")
 def _():
     ledger = os.path.join(work, "stopped.ledger")
-    run = subprocess.Popen([RUN, "fill", ledger, FRAMES, "--workers", "1"], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
+    run = subprocess.Popen([RUN, "fill", ledger, *few(), "--workers", "1"], stdout=subprocess.DEVNULL, stderr=subprocess.DEVNULL)
     deadline = time.monotonic() + 10
     while not os.path.exists(ledger) and time.monotonic() < deadline and run.poll() is None:
         time.sleep(0.01)
     run.send_signal(signal.SIGINT)
     run.wait(timeout=60)
-    call("fill", ledger, FRAMES)
+    call("fill", ledger, *few())
     call("check", ledger)
     outs = []
-    for path in (ledger, os.path.join(work, "one.ledger")):
+    for path in (ledger, os.path.join(work, "few.ledger")):
         call("export", path, os.path.join(work, "s.csv"), "--with-hints")
         with open(os.path.join(work, "s.csv"), newline="", encoding="utf-8") as file:
             outs.append(sorted(row["mark"] for row in csv.DictReader(line for line in file if not line.startswith("#"))))
@@ -464,6 +475,13 @@ def _():
     floors = {(row["floor_kind"], row["floor_gauss"]) for row in rows}
     assert len(rows) > 50 and len(floors) == 1 and floors.pop()[0] == "even", floors
     call("export", ledger, os.path.join(work, "out.xyz"), "--with-hints", code=2)
+    for what in ("passages", "regions", "frames"):
+        call("export", ledger, os.path.join(work, what + ".xyz"), "--what", what, code=2)
+    call("export", ledger, os.path.join(work, "none.csv"), "--what", "everything", code=2)
+    call("export", ledger, os.path.join(work, "none.csv"), "--desk", "north", code=2)
+    said = call("export", ledger, os.path.join(work, "none.csv"), "--what", "cases", code=3).stderr
+    assert "cases" in said and "hale_reason" in said and not os.path.exists(os.path.join(work, "none.csv")), said
+    call("export", ledger, os.path.join(work, "none"), "--what", "stamps", code=3)  # nobody has marked
     call("export", ledger, os.path.join(work, "no-such-folder", "out.csv"), "--with-hints", code=3)
 
 
@@ -531,7 +549,56 @@ def _():
     call("laws", ledger, "--study", "narrow", "--keep-edition", "one", "--person", "north", code=3)
     call("laws", ledger, "--keep-study", code=2)
     call("laws", ledger, "--study", "nowhere", code=3)
+    call("laws", ledger, "--with-hints", "--against", "two", code=3)
+    call("laws", ledger, "--with-hints", "--keep-edition", "two", code=2)
     call("check", ledger)
+
+
+@test("an edition says which picks are new, gone and changed, when frames come and choices change")
+def _():
+    ledger = os.path.join(work, "grown.ledger")
+    first, second = few()[3:5]
+    draws = ["--with-hints", "--joy-draws", "20", "--hale-draws", "20", "--drift-draws", "20"]
+    call("fill", ledger, first)
+    call("laws", ledger, *draws, "--keep-edition", "before", "--person", "night")
+    assert document("laws", ledger, "--json", *draws, "--against", "before")["same"]
+    call("fill", ledger, second)
+    call("follow", ledger)
+    grown = document("laws", ledger, "--json", *draws, "--against", "before")
+    words = grown["differences"]
+    assert not grown["same"] and grown["edition"] == "before"
+    for start in ("New: region ", "Number: sample.picks"):
+        assert any(line.startswith(start) for line in words), (start, words[:8])
+    assert not any(line.startswith("Choice: ") for line in words), "no choice has changed"
+    fewer = document("laws", ledger, "--json", *draws, "--cmd-max", "20", "--against", "before")["differences"]
+    assert any(line.startswith("Gone: region ") for line in fewer) and any(line.startswith("Choice: ") for line in fewer), fewer[:8]
+    assert "Gone: region" in call("laws", ledger, *draws, "--cmd-max", "20", "--against", "before").stdout
+
+
+@test("a study bundle says same without its ledger; another choice is told and exits 1; a spoilt one is one sentence")
+def _():
+    ledger, path = os.path.join(work, "studies.ledger"), os.path.join(work, "study.zip")
+    draws = ["--joy-draws", "20", "--hale-draws", "20", "--drift-draws", "20"]
+    printed = document("laws", ledger, "--json", "--study", "narrow", *draws, "--bundle", path)
+    os.rename(ledger, ledger + ".away")
+    found = document("laws", "--json", path)
+    assert found["bundle"]["same"] and found["bundle"]["differences"] == [] and found["hale"] == printed["hale"] and found["joy"] == printed["joy"]
+    assert call("laws", path).stdout.splitlines()[-2].startswith("same: ")
+    other = document("laws", "--json", path, "--cmd-max", "30", code=1)["bundle"]
+    assert not other["same"] and any("cmd-max" in line for line in other["differences"]), other
+    for words in (["--keep-study", "--person", "north"], ["--against", "one"], ["--bundle", path], ["--measure-floors"]):
+        call("laws", path, *words, code=2)
+    with open(path, "rb") as file:
+        whole = file.read()
+    spoilt = os.path.join(work, "spoilt.zip")
+    for bytes_ in (whole[: len(whole) // 2], whole[:40], whole.replace(b"versions.json", b"versionsXjson"), whole[:5000] + b"\0" * 200 + whole[5200:]):
+        with open(spoilt, "wb") as file:
+            file.write(bytes_)
+        said = call("laws", spoilt, code=3).stderr.strip()
+        assert "spoilt.zip" in said and "\n" not in said, said
+    with zipfile.ZipFile(spoilt, "w") as file:
+        file.writestr("../../study.json", "{}")
+    assert "leads out" in call("laws", spoilt, code=3).stderr
 
 
 @test("a daily region summary is brought; a line that cannot be read is named and the rest taken; --look writes nothing")
