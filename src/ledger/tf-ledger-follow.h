@@ -111,6 +111,15 @@ gboolean tf_ledger_follow_is_due (TfLedger *ledger);
  * TfMarkDeed.region when a mark is kept whose passage already has a region. */
 gint64 tf_ledger_region_of_passage (TfLedger *ledger, gint64 passage);
 
+/**
+ * tf_ledger_region_to_join: marks of one passage are one region. The region of a mark that @person keeps on @frame from @hint, or (@hint 0) with
+ * @outline: that of the passage the hint lies in, else of the one the outline is recognised as.
+ * @number: (out) (nullable): its number; NULL without one
+ * Returns: its local key; 0: a new region, since there is no passage, or it has no region or more than one, or @person has marked that region on this
+ * frame already.
+ */
+gint64 tf_ledger_region_to_join (TfLedger *ledger, gint64 frame, gint64 person, gint64 hint, const TfOutline *outline, char **number);
+
 /** TfKnown: a region that should be on a frame. */
 typedef struct
 {

@@ -137,6 +137,34 @@ tf_ledger_region_of_passage (TfLedger *ledger, gint64 passage)
                    passage);
 }
 
+/* All passages that are one region with ?1. */
+#define SAME_PASSAGES                                                                              \
+  "SELECT w.id FROM passage w WHERE w.same = (SELECT same FROM passage WHERE id = ?1)"
+#define ONLY_REGION_SQL                                                                            \
+  "SELECT CASE count (DISTINCT k.region) WHEN 1 THEN max (k.region) ELSE 0 END FROM (" MARKS_OF (  \
+      SAME_PASSAGES) ") k"
+
+gint64
+tf_ledger_region_to_join (TfLedger *ledger, gint64 frame, gint64 person, gint64 hint,
+                          const TfOutline *outline, char **number)
+{
+  g_return_val_if_fail (ledger != NULL && outline != NULL, 0);
+  gint64 passage = hint != 0 ? tf_ledger_passage_of (ledger, (TfSight){ hint, TRUE }) : 0;
+  if (passage == 0)
+    passage = tf_ledger_recognise (ledger, frame, outline);
+  gint64 region = passage != 0 ? tf_value (ledger, NULL, 0, ONLY_REGION_SQL, "i", passage) : 0;
+  gboolean marked = tf_value (ledger, NULL, 0,
+                              "SELECT 1 FROM mark WHERE region = ?1 AND frame = ?2 AND person = ?3 "
+                              "AND live = 1",
+                              "iii", region, frame, person)
+                    != 0;
+  if (marked)
+    region = 0;
+  if (number != NULL)
+    *number = tf_text_value (ledger, NULL, "SELECT number FROM region WHERE id = ?1", "i", region);
+  return region;
+}
+
 GPtrArray *
 tf_ledger_passage_rows (TfLedger *ledger, gint64 passage, gboolean same, gboolean outlines,
                         GError **error)

@@ -237,6 +237,44 @@ test_kept_in_its_passage (Fixture *f, gconstpointer data)
   g_assert_cmpstr (view, ==, "1 2");
 }
 
+static gint64
+to_join (TfLedger *ledger, TfSight hint, gint64 person, const TfOutline *outline)
+{
+  TfRow *row = tf_ledger_row (ledger, hint.mark, TRUE, NULL);
+  g_autofree char *number = NULL;
+  gint64 region
+      = tf_ledger_region_to_join (ledger, row->frame, person, outline == NULL ? hint.mark : 0,
+                                  outline != NULL ? outline : row->outline, &number);
+  g_assert_true ((region != 0) == (number != NULL));
+  tf_row_free (row);
+  return region;
+}
+
+/* Marks of one passage are one region, whether the hint is kept or the outline drawn; nothing is
+ * assumed without passages, in a passage of two regions, or where that person marked it already. */
+static void
+test_joins_its_region (Fixture *f, gconstpointer data)
+{
+  gint64 north = tf_ledger_person (f->ledger, "north", NULL),
+         south = tf_ledger_person (f->ledger, "south", NULL);
+  fill_all (f);
+  TfSight second = hint_at (f->ledger, 1, 2), sixth = hint_at (f->ledger, 1, 6);
+  g_assert_cmpint (to_join (f->ledger, second, north, NULL), ==, 0); /* not followed yet */
+  follow (f->ledger, NULL);
+  g_assert_cmpint (to_join (f->ledger, second, north, NULL), ==, 0); /* hints only */
+  gint64 region = fixture_region (f->ledger, keep_hint (f->ledger, hint_at (f->ledger, 1, 4), north, 0));
+  g_assert_cmpint (to_join (f->ledger, second, north, NULL), ==, region);
+  g_assert_cmpint (to_join (f->ledger, hint_at (f->ledger, 0, 2), north, NULL), ==, 0);
+  g_autoptr (TfOutline) drawn = outline_of (1, 6), elsewhere = outline_of (2, 6);
+  g_assert_cmpint (to_join (f->ledger, sixth, north, drawn), ==, region);
+  g_assert_cmpint (to_join (f->ledger, sixth, north, elsewhere), ==, 0);
+  g_assert_cmpint (to_join (f->ledger, hint_at (f->ledger, 1, 4), north, NULL), ==, 0); /* marked */
+  g_assert_cmpint (to_join (f->ledger, hint_at (f->ledger, 1, 4), south, NULL), ==, region);
+  keep_hint (f->ledger, hint_at (f->ledger, 1, 0), north, 0); /* a second region in the passage */
+  g_assert_cmpint (to_join (f->ledger, second, north, NULL), ==, 0);
+  g_assert_cmpint (to_join (f->ledger, sixth, north, drawn), ==, 0);
+}
+
 static void
 test_cut_and_undone (Fixture *f, gconstpointer data)
 {
@@ -450,6 +488,7 @@ add_follow_tests (void)
   FIXTURE_TEST ("/ledger/follow/three-regions-are-three-passages", test_three_passages);
   FIXTURE_TEST ("/ledger/follow/frames-in-any-order-give-the-same", test_any_order);
   FIXTURE_TEST ("/ledger/follow/a-kept-hint-stays-in-its-passage", test_kept_in_its_passage);
+  FIXTURE_TEST ("/ledger/follow/a-mark-joins-the-only-region-of-its-passage", test_joins_its_region);
   FIXTURE_TEST ("/ledger/follow/a-cut-stands-and-is-undone", test_cut_and_undone);
   FIXTURE_TEST ("/ledger/follow/a-cut-outlives-its-hint", test_cut_outlives_its_hint);
   FIXTURE_TEST ("/ledger/follow/a-link-joins-and-the-last-word-stands", test_link);
