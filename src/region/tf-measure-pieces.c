@@ -16,24 +16,9 @@ static const double CELL_MM = 1.5;
 /* A runner-up this strong that tells otherwise leaves the third witness undecided. */
 static const double RIVAL_SHARE = 0.8;
 
-typedef struct
-{
-  double flux, sum[3], floor_flux;
-  int sign;
-} Cell;
-
-typedef struct
-{
-  int sign;
-  double flux, sum[3];
-} Piece;
-
-typedef struct
-{
-  guint width, height;
-  Cell *cells;
-  GArray *pieces; /* Piece */
-} Field;
+typedef TfPieceCell Cell;
+typedef TfPiece Piece;
+typedef TfPieceField Field;
 
 static guint
 cell_pixels (const TfRegionSamples *samples)
@@ -85,7 +70,7 @@ fill_cells (Field *field, const TfRegionSamples *samples)
 }
 
 /* Takes the cell and all that touches it, by a stack of cells to look at; visited cells get
- * sign 0. */
+ * sign 0 and the number of their piece. */
 static void
 flood (Field *field, guint start, GArray *stack)
 {
@@ -98,6 +83,7 @@ flood (Field *field, guint start, GArray *stack)
       guint at = g_array_index (stack, guint, stack->len - 1);
       guint x = at % field->width, y = at / field->width;
       g_array_set_size (stack, stack->len - 1);
+      field->cells[at].piece = field->pieces->len + 1;
       piece.flux += fabs (field->cells[at].flux);
       for (guint i = 0; i < 3; i++)
         piece.sum[i] += piece.sign * field->cells[at].sum[i];
@@ -157,22 +143,34 @@ find_witness (const GArray *pieces)
 }
 
 void
+tf_region_find_pieces (const TfRegionSamples *samples, TfPieceField *field)
+{
+  *field = (TfPieceField){ .pieces = g_array_new (FALSE, TRUE, sizeof (TfPiece)) };
+  g_autoptr (GArray) stack = g_array_new (FALSE, FALSE, sizeof (guint));
+  fill_cells (field, samples);
+  for (guint k = 0; k < field->width * field->height; k++)
+    if (field->cells[k].sign != 0)
+      flood (field, k, stack);
+}
+
+void
+tf_piece_field_clear (TfPieceField *field)
+{
+  g_clear_pointer (&field->pieces, g_array_unref);
+  g_clear_pointer (&field->cells, g_free);
+}
+
+void
 tf_region_pieces (const TfRegionSamples *samples, double flux_unsigned, TfPieces *pieces)
 {
-  Field field = { .pieces = g_array_new (FALSE, TRUE, sizeof (Piece)) };
-  g_autoptr (GArray) stack = g_array_new (FALSE, FALSE, sizeof (guint));
-  fill_cells (&field, samples);
-  for (guint k = 0; k < field.width * field.height; k++)
-    if (field.cells[k].sign != 0)
-      flood (&field, k, stack);
+  g_auto (TfPieceField) field = { 0 };
+  tf_region_find_pieces (samples, &field);
   g_array_sort (field.pieces, by_flux);
   pieces->n = 0;
   for (guint k = 0; k < field.pieces->len; k++)
     pieces->n += g_array_index (field.pieces, Piece, k).flux
                  >= samples->params->piece_share * flux_unsigned;
   pieces->witness = find_witness (field.pieces);
-  g_array_unref (field.pieces);
-  g_free (field.cells);
 }
 
 int

@@ -148,6 +148,26 @@ typedef struct
   guint n;     /* with at least piece_share of the flux */
   int witness; /* the western of the strongest piece of each polarity */
 } TfPieces;
+typedef struct
+{
+  double flux, sum[3], floor_flux; /* sum: of flux * unit vector */
+  int sign;                        /* of the polarity it belongs to; 0 when it was taken */
+  guint piece;                     /* 1 + index of its piece; 0: none */
+} TfPieceCell;
+typedef struct
+{
+  int sign;
+  double flux, sum[3]; /* flux and sum unsigned */
+} TfPiece;
+typedef struct
+{
+  guint width, height;
+  TfPieceCell *cells;
+  GArray *pieces; /* TfPiece, of any strength */
+} TfPieceField;
+void tf_region_find_pieces (const TfRegionSamples *samples, TfPieceField *field);
+void tf_piece_field_clear (TfPieceField *field);
+G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfPieceField, tf_piece_field_clear)
 void tf_region_pieces (const TfRegionSamples *samples, double flux_unsigned, TfPieces *pieces);
 /** tf_axis_witness: the polarity whose pole is west; 0 when nearer than @least deg, ABSENT
  * without two poles. */

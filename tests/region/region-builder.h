@@ -66,3 +66,4 @@ void add_outline_tests (void);
 void add_flag_tests (void);
 void add_invariant_tests (void);
 void add_real_tests (void);
+void add_split_tests (void);

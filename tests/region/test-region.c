@@ -17,6 +17,7 @@ main (int argc, char **argv)
   add_noise_tests ();
   add_outline_tests ();
   add_real_tests ();
+  add_split_tests ();
   add_potential_tests ();
   add_companion_tests ();
   return g_test_run ();
