@@ -176,4 +176,5 @@ tf_window_restore_plate (TfWindow *self)
 {
   restore_overlays (tf_window_get_session (self));
   tf_preferences_restore_measure (tf_window_get_session (self));
+  tf_window_restore_units (self);
 }

@@ -43,10 +43,13 @@ tf_deed_copy (const TfDeed *deed)
   copy->follows = deed->follows;
   copy->region = deed->region;
   copy->author = deed->author;
+  copy->joins = deed->joins;
   copy->origin = deed->origin;
   copy->outline = deed->outline != NULL ? tf_outline_ref (deed->outline) : NULL;
   if (deed->kind == TF_DEED_KEEP)
     tf_measure_copy (&copy->measure, &deed->measure);
+  copy->pixels = deed->pixels != NULL ? tf_frame_ref (deed->pixels) : NULL;
+  copy->params = deed->params;
   copy->method = g_strdup (deed->method);
   copy->text = g_strdup (deed->text);
   copy->ends[0] = deed->ends[0];
@@ -72,6 +75,7 @@ tf_deed_free (TfDeed *deed)
   g_free (deed->person);
   g_clear_pointer (&deed->outline, tf_outline_unref);
   tf_measure_clear (&deed->measure);
+  g_clear_pointer (&deed->pixels, tf_frame_unref);
   g_free (deed->method);
   g_free (deed->text);
   g_clear_pointer (&deed->parts, g_ptr_array_unref);
@@ -83,14 +87,39 @@ tf_deed_free (TfDeed *deed)
   g_free (deed);
 }
 
+/* A hand quicker than the outline term: what is kept has it all the same. */
+static void
+measure_fully (TfDeed *deed)
+{
+  g_auto (TfMeasure) full = { 0 };
+  deed->params.outline_term = TRUE;
+  if (deed->pixels == NULL
+      || !tf_measure_region (&full, deed->pixels, deed->outline, &deed->params, NULL))
+    return;
+  tf_measure_clear (&deed->measure);
+  deed->measure = full;
+  full = (TfMeasure){ 0 };
+  g_clear_pointer (&deed->pixels, tf_frame_unref);
+}
+
+static gint64
+region_of (const TfDeed *deed, TfLedger *ledger, gint64 person)
+{
+  if (deed->region != 0 || deed->follows != 0 || deed->joins == TF_JOINS_NOTHING)
+    return deed->region;
+  gint64 hint = deed->joins == TF_JOINS_BY_HINT ? deed->hint : 0;
+  return tf_ledger_region_to_join (ledger, deed->frame, person, hint, deed->outline, NULL);
+}
+
 static gboolean
 run_keep (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
 {
+  measure_fully (deed);
   TfMarkDeed mark = { .frame = deed->frame,
                       .person = person,
                       .hint = deed->hint,
                       .follows = deed->follows,
-                      .region = deed->region,
+                      .region = region_of (deed, ledger, person),
                       .origin = deed->origin,
                       .outline = deed->outline,
                       .measure = &deed->measure,

@@ -15,7 +15,7 @@ G_BEGIN_DECLS
 
 typedef enum
 {
-  TF_DEED_KEEP,     /* frame, hint, follows, region, origin, outline, measure, method */
+  TF_DEED_KEEP,     /* frame, hint, follows, region, joins, origin, outline, measure, method, pixels */
   TF_DEED_DROP,     /* hint */
   TF_DEED_WITHDRAW, /* follows: the mark */
   TF_DEED_NOTE,     /* region, text */
@@ -39,14 +39,25 @@ typedef enum
   TF_DEED_SCALE,    /* scale */
 } TfDeedKind;
 
+/** TfJoins: by what a mark that is kept without a region finds the one its passage has. */
+typedef enum
+{
+  TF_JOINS_NOTHING,
+  TF_JOINS_BY_HINT,
+  TF_JOINS_BY_OUTLINE,
+} TfJoins;
+
 typedef struct
 {
   TfDeedKind kind;
   char *person;
   gint64 frame, hint, follows, region, author;
+  TfJoins joins;
   TfMarkOrigin origin;
   TfOutline *outline;
   TfMeasure measure;
+  TfFrame *pixels; /* when @measure has no outline term yet: it is measured before it is kept; else NULL */
+  TfMeasureParams params;
   char *method;
   char *text;
   TfSight ends[2];

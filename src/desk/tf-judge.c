@@ -56,6 +56,12 @@ tf_judge_get_divides (const TfJudge *judge)
   return judge->divides;
 }
 
+const TfVerdictParams *
+tf_judge_get_params (const TfJudge *judge)
+{
+  return &judge->study->verdict;
+}
+
 TfVerdict
 tf_judge_measure (const TfJudge *judge, const TfMeasure *measure, TfSampleRow *row)
 {

@@ -18,6 +18,7 @@ TfJudge *tf_judge_new_for (const TfStudy *study);
 TfJudge *tf_judge_ref (TfJudge *judge);
 void tf_judge_unref (TfJudge *judge);
 const TfDivides *tf_judge_get_divides (const TfJudge *judge);
+const TfVerdictParams *tf_judge_get_params (const TfJudge *judge);
 /** tf_judge_measure: @row: (out) (nullable): the measure as a sample row */
 TfVerdict tf_judge_measure (const TfJudge *judge, const TfMeasure *measure, TfSampleRow *row);
 TfVerdict tf_judge_point (const TfJudge *judge, const TfPoint *point);

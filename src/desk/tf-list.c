@@ -76,7 +76,7 @@ add_seen (GString *text, const TfShiftRow *row, TfTime now)
 }
 
 static void
-add_change (GString *text, const TfShiftRow *row)
+add_change (GString *text, const TfShiftRow *row, TfUnits units)
 {
   g_autofree char *flux = tf_sheet_dup_change (&row->flux_mx), *area = tf_sheet_dup_change (&row->area_msh);
   g_autofree char *line = NULL;
@@ -85,7 +85,7 @@ add_change (GString *text, const TfShiftRow *row)
   else if (*flux != '\0')
     line = g_strdup_printf (_ ("flux %s, area %s"), flux, area);
   else if (isfinite (row->flux_mx.now))
-    line = tf_chart_dup_flux (row->flux_mx.now);
+    line = tf_units_dup_flux (units, row->flux_mx.now);
   add (text, line);
 }
 
@@ -119,7 +119,7 @@ add_notes (GString *text, const TfShiftRow *row, TfTime since)
 }
 
 static char *
-dup_lines (const TfShiftRow *row, const TfShift *shift)
+dup_lines (const TfShiftRow *row, const TfShift *shift, TfUnits units)
 {
   GString *text = g_string_new (NULL);
   g_autofree char *mw = tf_sheet_dup_class (row), *r = tf_sheet_dup_r (row, shift->time);
@@ -132,7 +132,7 @@ dup_lines (const TfShiftRow *row, const TfShift *shift)
     add (text, tangle);
   if (row->delta_candidate)
     add (text, _ ("δ candidate"));
-  add_change (text, row);
+  add_change (text, row, units);
   add_seen (text, row, shift->time);
   add_others (text, row);
   add_notes (text, row, shift->since);
@@ -140,7 +140,7 @@ dup_lines (const TfShiftRow *row, const TfShift *shift)
 }
 
 static TfListed *
-listed_new (const TfShiftRow *row, const TfShift *shift, gboolean first)
+listed_new (const TfShiftRow *row, const TfShift *shift, gboolean first, TfUnits units)
 {
   TfListed *item = g_object_new (TF_TYPE_LISTED, NULL);
   g_autofree char *place = isfinite (row->cmd_deg) ? tf_chart_dup_place (row->lat_deg, row->cmd_deg) : g_strdup ("");
@@ -148,7 +148,7 @@ listed_new (const TfShiftRow *row, const TfShift *shift, gboolean first)
   const char *name = *row->number == '\0' ? (row->is_new ? _ ("new") : _ ("hint")) : dash != NULL ? dash + 1 : row->number;
   item->heading = first ? g_strdup (tf_shift_group_title (row->group)) : NULL;
   item->name = g_strdup_printf ("%s  %s", name, place);
-  item->lines = dup_lines (row, shift);
+  item->lines = dup_lines (row, shift, units);
   item->stands_out = row->is_new || row->seen == TF_SEEN_NOT;
   item->mark = row->mark;
   item->is_hint = row->is_hint;
@@ -256,7 +256,8 @@ shift_changed (TfList *self)
     {
       const TfShiftRow *row = g_ptr_array_index (shift->rows, k);
       const TfShiftRow *before = k > 0 ? g_ptr_array_index (shift->rows, k - 1) : NULL;
-      g_autoptr (TfListed) item = listed_new (row, shift, before == NULL || before->group != row->group);
+      g_autoptr (TfListed) item = listed_new (row, shift, before == NULL || before->group != row->group,
+                                              tf_session_get_units (self->session));
       g_list_store_append (self->rows, item);
     }
   self->following = FALSE;

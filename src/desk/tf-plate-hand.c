@@ -1,12 +1,15 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-/* What the hand holds over the plate: the brush's circle at its size on the Sun, and the handles of
- * corners. */
+/* What the hand holds over the plate: the brush's circle at its size on the Sun, the handles of
+ * corners, and the line of a proposed split. */
 
 #include "tf-plate-private.h"
 
 #include <math.h>
+#include <glib/gi18n-lib.h>
+
+#include "tf-widget-style.h"
 
 enum
 {
@@ -191,6 +194,32 @@ draw_handles (TfPlate *self, cairo_t *cr)
     draw_handle (self, cr, self->corner);
 }
 
+/* The line of a proposed split, in what the hand is drawn in, with its name at its upper end. */
+static void
+draw_proposal (TfPlate *self, cairo_t *cr)
+{
+  static const double dashes[] = { 7, 5 };
+  const TfProposal *proposal = tf_session_get_proposal (self->session);
+  double ax, ay, bx, by;
+  if (proposal == NULL || !to_view (self, proposal->line.a, &ax, &ay)
+      || !to_view (self, proposal->line.b, &bx, &by))
+    return;
+  cairo_save (cr);
+  cairo_new_path (cr);
+  cairo_move_to (cr, ax, ay);
+  cairo_line_to (cr, bx, by);
+  cairo_set_dash (cr, dashes, G_N_ELEMENTS (dashes), 0);
+  stroke_twice (cr);
+  cairo_restore (cr);
+  TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), 0.9);
+  double x = ay < by ? ax : bx, y = fmin (ay, by) - 4;
+  for (int k = 0; k < 4; k++) /* a dark edge */
+    tf_chart_text (cr, &style, x + (k % 2 ? 1 : -1), y + (k / 2 ? 1 : -1), 0.5, 1,
+                   (TfColour){ 0.05, 0.06, 0.08, 0.75 }, _ ("split here? Shift+S"));
+  tf_chart_text (cr, &style, x, y, 0.5, 1, (TfColour){ 1.0, 0.945, 0.78, 1 },
+                 _ ("split here? Shift+S"));
+}
+
 void
 tf_plate_draw_hand (TfPlate *self, cairo_t *cr)
 {
@@ -199,4 +228,6 @@ tf_plate_draw_hand (TfPlate *self, cairo_t *cr)
     draw_brush (self, cr, tool == TF_TOOL_BRUSH_IN);
   else if (tool == TF_TOOL_CORNERS)
     draw_handles (self, cr);
+  else
+    draw_proposal (self, cr);
 }

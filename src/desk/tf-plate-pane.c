@@ -36,11 +36,19 @@ enum
 };
 static const double large_text = 19; /* px */
 
+static char *
+dup_range (TfPlatePane *self, double gauss)
+{
+  TfUnits units = self->session != NULL ? tf_session_get_units (self->session) : (TfUnits){ { 0 } };
+  g_autofree char *field = tf_units_dup_field (units, gauss, 0);
+  return g_strconcat ("± ", field, NULL);
+}
+
 static void
 view_changed (TfPlatePane *self)
 {
   double gauss = tf_session_get_range (self->session);
-  g_autofree char *text = g_strdup_printf (_ ("± %.0f G"), gauss);
+  g_autofree char *text = dup_range (self, gauss);
   gtk_label_set_label (self->range_words, text);
   self->setting = TRUE;
   gtk_range_set_value (GTK_RANGE (self->range), log10 (gauss));
@@ -57,7 +65,7 @@ range_moved (TfPlatePane *self)
 static char *
 format_range (GtkScale *scale, double value, TfPlatePane *self)
 {
-  return g_strdup_printf (_ ("± %.0f G"), pow (10, value));
+  return dup_range (self, pow (10, value));
 }
 
 static void

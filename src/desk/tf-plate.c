@@ -21,15 +21,15 @@ static const GdkRGBA ground = { 0.0902f, 0.098f, 0.1137f, 1 };
 /* -- words ----------------------------------------------------------------------------------- */
 
 static void
-append_field (GString *text, double gauss)
+append_field (GString *text, double gauss, TfUnits units)
 {
   if (!isfinite (gauss))
     {
       g_string_append (text, _ (" · no value here"));
       return;
     }
-  g_autofree char *number = tf_words_dup_signed (gauss, 0);
-  g_string_append_printf (text, " · %s G", number);
+  g_autofree char *field = tf_units_dup_signed_field (units, gauss, 0);
+  g_string_append_printf (text, " · %s", field);
 }
 
 static char *
@@ -57,7 +57,7 @@ dup_readout (TfPlate *self)
   if (isfinite (place.mu))
     g_string_append_printf (text, " · μ %.2f", place.mu);
   if (tf_view_to_pixel (view, geometry, self->pointer_x, self->pointer_y, &x, &y))
-    append_field (text, tf_frame_value (frame, x, y));
+    append_field (text, tf_frame_value (frame, x, y), tf_session_get_units (self->session));
   return g_string_free (text, FALSE);
 }
 
@@ -109,6 +109,8 @@ append_regions (TfPlate *self, GString *text)
       g_string_append_printf (text, _ ("; chosen: %s at %s"), tf_region_item_get_label (chosen),
                               place);
     }
+  if (tf_session_get_proposal (self->session) != NULL)
+    g_string_append (text, _ ("; a split is proposed"));
 }
 
 char *
@@ -128,9 +130,11 @@ tf_plate_dup_description (TfPlate *self)
   if (vantage != NULL && !tf_geometry_is_map (&info->geometry))
     g_string_append_printf (text, _ (" seen from %s"), vantage);
   TfLook look = tf_session_get_view (self->session)->look;
+  g_autofree char *range = tf_units_dup_field (tf_session_get_units (self->session),
+                                               tf_session_get_range (self->session), 0);
   gboolean map = look == TF_LOOK_DISK && tf_geometry_is_map (&info->geometry);
-  g_string_append_printf (text, _ ("; look: %s; field range ± %.0f G"),
-                          map ? _ ("map") : _ (looks[look]), tf_session_get_range (self->session));
+  g_string_append_printf (text, _ ("; look: %s; field range ± %s"),
+                          map ? _ ("map") : _ (looks[look]), range);
   append_regions (self, text);
   return g_string_free (text, FALSE);
 }
@@ -221,7 +225,7 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   tf_surface_append (snapshot, widget, self->picture, 0, 0, scale);
   tf_surface_append (snapshot, widget, self->overlay, dx, dy, scale / stretch);
   if (line_n > 0 || tf_session_get_tool (self->session) != TF_TOOL_NONE
-      || tf_plate_has_preview (self))
+      || tf_session_get_proposal (self->session) != NULL || tf_plate_has_preview (self))
     {
       cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
       tf_plate_draw_line (self, cr, width, height);

@@ -175,24 +175,60 @@ add_measure (TfPreferencesDialog *self)
     }
 }
 
+/* One choice of a command with a state: a radio button. */
 static GtkWidget *
-palette_button (const char *label, const char *action)
+state_button (const char *label, const char *action)
 {
   GtkWidget *button = gtk_check_button_new_with_label (label);
   gtk_actionable_set_detailed_action_name (GTK_ACTIONABLE (button), action);
   return button;
 }
 
-static GtkWidget *
-palette_row (void)
+typedef struct
+{
+  const char *title;
+  struct
+  {
+    const char *label, *action;
+  } choice[2];
+} StateRow;
+
+static const StateRow palette_row = { N_ ("Colours of the field"),
+                                      { { N_ ("grey, white positive"), "win.palette::grey" },
+                                        { N_ ("amber positive, indigo negative"),
+                                          "win.palette::amber-indigo" } } };
+static const StateRow unit_rows[] = {
+  { N_ ("Flux"),
+    { { N_ ("maxwell, Mx"), "win.units-flux::Mx" }, { N_ ("weber, Wb"), "win.units-flux::Wb" } } },
+  { N_ ("Field"),
+    { { N_ ("gauss, G"), "win.units-field::G" }, { N_ ("millitesla, mT"), "win.units-field::mT" } } },
+  { N_ ("Lengths"),
+    { { N_ ("degrees first"), "win.units-length::degrees" },
+      { N_ ("megametres first, Mm"), "win.units-length::Mm" } } },
+};
+
+static void
+add_state_row (AdwPreferencesGroup *group, const StateRow *described)
 {
   GtkWidget *row = adw_action_row_new (), *box = gtk_box_new (GTK_ORIENTATION_VERTICAL, 2);
-  adw_preferences_row_set_title (ADW_PREFERENCES_ROW (row), _ ("Colours of the field"));
-  gtk_box_append (GTK_BOX (box), palette_button (_ ("grey, white positive"), "win.palette::grey"));
-  gtk_box_append (GTK_BOX (box),
-                  palette_button (_ ("amber positive, indigo negative"), "win.palette::amber-indigo"));
+  adw_preferences_row_set_title (ADW_PREFERENCES_ROW (row), _ (described->title));
+  for (guint k = 0; k < G_N_ELEMENTS (described->choice); k++)
+    gtk_box_append (GTK_BOX (box), state_button (_ (described->choice[k].label),
+                                                 described->choice[k].action));
   adw_action_row_add_suffix (ADW_ACTION_ROW (row), box);
-  return row;
+  adw_preferences_group_add (group, row);
+}
+
+static AdwPreferencesGroup *
+units_group (void)
+{
+  AdwPreferencesGroup *group = ADW_PREFERENCES_GROUP (adw_preferences_group_new ());
+  adw_preferences_group_set_title (group, _ ("Units"));
+  adw_preferences_group_set_description (
+      group, _ ("Of what this window shows. Files, sheets and the ledger keep Mx, G and Mm."));
+  for (guint k = 0; k < G_N_ELEMENTS (unit_rows); k++)
+    add_state_row (group, &unit_rows[k]);
+  return group;
 }
 
 static void
@@ -230,9 +266,10 @@ tf_preferences_dialog_new (GtkWindow *parent, TfSession *session)
   AdwPreferencesGroup *look = ADW_PREFERENCES_GROUP (adw_preferences_group_new ());
   add_measure (self);
   adw_preferences_group_set_title (look, _ ("How the plate looks"));
-  adw_preferences_group_add (look, palette_row ());
+  add_state_row (look, &palette_row);
   adw_preferences_page_add (page, self->measure);
   adw_preferences_page_add (page, look);
+  adw_preferences_page_add (page, units_group ());
   adw_preferences_window_add (ADW_PREFERENCES_WINDOW (self), page);
   show_values (self);
   return GTK_WIDGET (self);

@@ -112,6 +112,7 @@ deed_of_hint (TfSession *self, TfRegionItem *item)
     {
       deed->hint = row->mark;
       deed->region = tf_session_get_continued_key (self, item);
+      deed->joins = TF_JOINS_BY_HINT;
       deed->origin = TF_MARK_KEPT;
     }
   deed->outline = tf_outline_ref (row->outline);
@@ -136,9 +137,21 @@ take_place (TfSession *self, TfDeed *deed, TfRegionItem *of)
     {
       deed->hint = row->mark;
       deed->region = tf_session_get_continued_key (self, of);
+      deed->joins = TF_JOINS_BY_HINT;
     }
   else
     deed->follows = row->mark;
+}
+
+static void
+take_measured (TfSession *self, TfDeed *deed, TfOutline *outline, const TfMeasure *measure,
+               gboolean at_rest)
+{
+  deed->outline = tf_outline_ref (outline);
+  tf_measure_copy (&deed->measure, measure);
+  deed->method = g_strdup (self->method);
+  deed->params = self->params;
+  deed->pixels = at_rest ? NULL : tf_frame_ref (self->frame);
 }
 
 static TfDeed *
@@ -146,24 +159,23 @@ deed_of_draft (TfSession *self)
 {
   TfDeed *deed = deed_new (self, TF_DEED_KEEP);
   deed->origin = TF_MARK_DRAWN;
+  deed->joins = TF_JOINS_BY_OUTLINE;
   if (tf_session_get_replaces (self))
     take_place (self, deed, self->replaced);
-  deed->outline = tf_outline_ref (self->draft);
-  tf_measure_copy (&deed->measure, &self->measure);
-  deed->method = g_strdup (self->method);
+  take_measured (self, deed, self->draft, &self->measure, self->at_rest);
   return deed;
 }
 
-/* The second half of a split is a region of its own. */
+/* The second half of a split is a region of its own: a new one, or the one that its own outline is
+ * recognised as. */
 static TfDeed *
 deed_of_other (TfSession *self, const TfDeed *first)
 {
   TfDeed *deed = deed_new (self, TF_DEED_KEEP);
   deed->origin = first->origin;
   deed->hint = first->hint;
-  deed->outline = tf_outline_ref (self->other);
-  tf_measure_copy (&deed->measure, &self->other_measure);
-  deed->method = g_strdup (self->method);
+  deed->joins = TF_JOINS_BY_OUTLINE;
+  take_measured (self, deed, self->other, &self->other_measure, self->other_at_rest);
   return deed;
 }
 
@@ -211,10 +223,19 @@ deed_of_chosen (TfSession *self, gboolean (*is) (TfSession *, TfRegionItem *),
   return only;
 }
 
-gboolean
-tf_session_keep (TfSession *self)
+static TfDeed *
+as_new_region (TfDeed *deed)
 {
-  g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
+  for (guint k = 0; deed->kind == TF_DEED_TOGETHER && k < deed->parts->len; k++)
+    as_new_region (deed->parts->pdata[k]);
+  deed->region = 0;
+  deed->joins = TF_JOINS_NOTHING;
+  return deed;
+}
+
+static gboolean
+keep (TfSession *self, TfDeed *(*how) (TfDeed *))
+{
   if (!tf_session_can_keep (self) || !has_person (self))
     return FALSE;
   if (self->draft == NULL && self->also->len == 0 && tf_session_is_elsewhere (chosen_row (self)))
@@ -230,13 +251,40 @@ tf_session_keep (TfSession *self)
   if (self->draft != NULL)
     {
       self->keeping = TRUE;
-      return push (self, deed_of_drawing (self));
+      return push (self, how (deed_of_drawing (self)));
     }
   TfDeed *deed = deed_of_chosen (self, is_keepable, deed_of_hint);
   if (deed == NULL)
     return FALSE;
   self->judging = chosen_row (self)->mark;
-  return push (self, deed);
+  return push (self, how (deed));
+}
+
+static TfDeed *
+as_it_is (TfDeed *deed)
+{
+  return deed;
+}
+
+gboolean
+tf_session_keep (TfSession *self)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
+  return keep (self, as_it_is);
+}
+
+gboolean
+tf_session_can_keep_new (TfSession *self)
+{
+  return tf_session_can_keep (self)
+         && (tf_session_get_joins (self) != NULL || tf_session_get_other_joins (self) != NULL);
+}
+
+gboolean
+tf_session_keep_new (TfSession *self)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
+  return keep (self, as_new_region);
 }
 
 gboolean
@@ -478,6 +526,7 @@ tf_session_undo (TfSession *self)
     return TRUE;
   if (!tf_session_can_undo (self))
     return FALSE;
+  tf_session_note_seen (self);
   return push (self, deed_new (self, TF_DEED_UNDO));
 }
 
@@ -494,7 +543,10 @@ tf_session_redo (TfSession *self)
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
   if (tf_session_step_back (self, TRUE))
     return TRUE;
-  return tf_session_can_redo (self) && push (self, deed_new (self, TF_DEED_REDO));
+  if (!tf_session_can_redo (self))
+    return FALSE;
+  tf_session_note_seen (self);
+  return push (self, deed_new (self, TF_DEED_REDO));
 }
 
 /* -- what came of it ------------------------------------------------------------------------- */
@@ -544,6 +596,16 @@ is_of_study (const TfDeed *deed)
              && ((TfDeed *)deed->parts->pdata[0])->kind == TF_DEED_STUDY);
 }
 
+/* A hint that is kept or dropped changes no passage. */
+static gboolean
+changes_marks (const TfDeed *deed)
+{
+  static const guint kinds = 1u << TF_DEED_WITHDRAW | 1u << TF_DEED_LINK | 1u << TF_DEED_CUT
+                             | 1u << TF_DEED_UNDO | 1u << TF_DEED_REDO | 1u << TF_DEED_TOGETHER;
+  return (kinds >> deed->kind & 1u) != 0
+         || (deed->kind == TF_DEED_KEEP && deed->origin != TF_MARK_KEPT);
+}
+
 static void
 saved (TfWriter *writer, TfDeed *deed, TfSession *self)
 {
@@ -557,6 +619,7 @@ saved (TfWriter *writer, TfDeed *deed, TfSession *self)
     }
   if (is_of_study (deed))
     tf_session_divide_saved (self);
+  self->passages_due = self->passages_due || changes_marks (deed);
   if (deed->kind == TF_DEED_KEEP || deed->mark != 0)
     after_keep (self, deed);
   else if (deed->kind == TF_DEED_DROP)

@@ -357,7 +357,7 @@ restore_from (TfSession *self, JsonNode *root)
   read_joined (self, object);
   self->other = read_outline (object, "other");
   if (self->other != NULL)
-    tf_session_measure_other (self);
+    tf_session_measure_draft (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
   return TRUE;
 }

@@ -166,6 +166,7 @@ fed (const TfFeedState *state, gpointer data)
     {
       say_fed (self, state);
       g_clear_pointer (&self->feed, tf_feed_free);
+      tf_session_make_passages (self);
       tf_session_refresh (self, TRUE);
       next = g_steal_pointer (&self->to_add);
     }

@@ -258,6 +258,8 @@ tf_session_choose_frame (TfSession *self, TfFrameItem *item)
   self->preview = tf_correction_none ();
   tf_session_update_method (self);
   tf_loader_open (self->loader, row->path, &spec, &self->correction, loaded, self);
+  if (self->passages_due)
+    tf_session_make_passages (self);
   tf_session_refresh (self, FALSE);
 }
 

@@ -145,8 +145,6 @@ tf_session_step_back (TfSession *self, gboolean forward)
   self->tool = tool;
   if (self->draft != NULL)
     tf_session_measure_draft (self);
-  if (self->other != NULL)
-    tf_session_measure_other (self);
   tf_session_store_draft (self);
   tf_session_judge_choice (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
@@ -191,8 +189,6 @@ tf_session_change_draft (TfSession *self, TfOutline *outline, TfOutline *other)
   put_draft (self, outline);
   self->other = other;
   tf_session_measure_draft (self);
-  if (other != NULL)
-    tf_session_measure_other (self);
   tf_session_store_draft (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }

@@ -20,6 +20,7 @@ typedef struct
   gboolean all;
   gint64 frame;
   char *person;
+  gint64 person_key;
   TfStudy *study; /* brought: with the divides of the ledger */
   /* brought */
   TfJudge *judge;
@@ -27,6 +28,7 @@ typedef struct
   GPtrArray *frames; /* all of them, when asked */
   TfFrameRow *row;   /* else the one */
   GPtrArray *rows;   /* of the frame */
+  GHashTable *joins; /* of its hints */
   GArray *points, *dots, *mark_dots;
   char *read_only, *draft;
   char **notices;
@@ -43,6 +45,7 @@ reading_free (gpointer data)
   g_clear_pointer (&r->frames, g_ptr_array_unref);
   g_clear_pointer (&r->row, tf_frame_row_free);
   g_clear_pointer (&r->rows, g_ptr_array_unref);
+  g_clear_pointer (&r->joins, g_hash_table_unref);
   g_clear_pointer (&r->points, g_array_unref);
   g_clear_pointer (&r->dots, g_array_unref);
   g_clear_pointer (&r->mark_dots, g_array_unref);
@@ -112,16 +115,11 @@ dup_notices (TfLedger *ledger)
   return (char **)g_ptr_array_free (texts, FALSE);
 }
 
-/* Whether the person's last deed can be undone. A name that the ledger does not know yet is not
- * recorded by asking. */
+/* Whether the person's last deed can be undone. */
 static void
 read_person (Reading *r, TfLedger *ledger)
 {
-  g_auto (GStrv) known = tf_ledger_dup_persons (ledger);
-  if (r->person == NULL || known == NULL
-      || !g_strv_contains ((const char *const *)known, r->person))
-    return;
-  gint64 key = tf_ledger_person (ledger, r->person, NULL);
+  gint64 key = r->person_key = tf_session_find_person (ledger, r->person);
   if (key == 0)
     return;
   r->can_undo = tf_ledger_can_undo (ledger, key);
@@ -145,6 +143,8 @@ read_frames (Reading *r, TfLedger *ledger, GError **error)
     r->row = tf_ledger_frame (ledger, r->frame, NULL);
   TfRowQuery query = { .marks = TRUE, .hints = TRUE, .frame = r->frame };
   r->rows = tf_ledger_rows (ledger, &query, error);
+  if (r->rows != NULL)
+    r->joins = tf_session_read_joins (ledger, r->rows, r->person_key);
   return r->rows != NULL;
 }
 
@@ -202,6 +202,7 @@ take_ledger_state (TfSession *self, Reading *r)
 static void
 take_reading (TfSession *self, Reading *r)
 {
+  gboolean first = !self->open;
   take_ledger_state (self, r);
   gint64 now = self->frame_item != NULL ? tf_frame_item_get_row (self->frame_item)->id : 0;
   tf_session_take_divides (self, r->study, r->judge);
@@ -213,6 +214,8 @@ take_reading (TfSession *self, Reading *r)
   tf_session_check_geometry (self);
   if (r->rows != NULL && r->frame == now)
     {
+      g_clear_pointer (&self->joins, g_hash_table_unref);
+      self->joins = g_steal_pointer (&r->joins);
       tf_session_replace_regions (self, r->rows);
       if (tf_session_get_pending (self) == 0)
         tf_session_forget_hoped (self);
@@ -220,6 +223,8 @@ take_reading (TfSession *self, Reading *r)
     }
   tf_session_replace_points (self, g_steal_pointer (&r->points), g_steal_pointer (&r->dots),
                              g_steal_pointer (&r->mark_dots));
+  if (first)
+    tf_session_make_passages (self);
   tf_session_judge_divide (self);
   tf_session_forget_laws (self);
   tf_session_update_shift (self);
@@ -329,6 +334,7 @@ tf_session_close (TfSession *self)
     }
   g_clear_object (&self->writer);
   g_clear_pointer (&self->reader, tf_lane_close);
+  tf_session_close_join (self);
   tf_session_laws_close (self);
   g_clear_pointer (&self->path, g_free);
   g_clear_pointer (&self->trouble, g_free);

@@ -23,7 +23,8 @@ typedef struct
   TfOutline *outline;
   TfMeasureParams params;
   guint64 serial;
-  gboolean live; /* of a line in hand */
+  gboolean live;  /* of a line in hand */
+  gboolean other; /* of the second half of a split */
   guint n_line;  /* vertices it had */
 } Order;
 
@@ -107,6 +108,7 @@ measure_half (TfSession *self, const TfOutline *half)
   params.outline_term = FALSE;
   g_autoptr (TfMask) mask = tf_mask_new (self->frame, half, params.mu_min, (guint)params.law);
   tf_measure_clear (&self->other_measure);
+  self->other_at_rest = FALSE;
   self->other_measured
       = tf_measure_masked (&self->other_measure, self->frame, mask, NULL, &params, NULL);
 }
@@ -142,6 +144,25 @@ live_done (TfSession *self, const Order *order, TfMeasure *measure, const GError
     tf_session_measure_line (self);
 }
 
+/* With the outline term. */
+static void
+rest_done (TfSession *self, const Order *order, TfMeasure *measure, const GError *error)
+{
+  if (!order->other)
+    {
+      take_measure (self, measure, error);
+      self->at_rest = self->measured;
+    }
+  else if (measure != NULL)
+    {
+      tf_measure_clear (&self->other_measure);
+      self->other_measure = *measure;
+      *measure = (TfMeasure){ 0 };
+      self->other_measured = self->other_at_rest = TRUE;
+    }
+  tf_session_emit (self, TF_SIGNAL_CHOICE);
+}
+
 static void
 order_done (GObject *source, GAsyncResult *result, gpointer data)
 {
@@ -152,11 +173,7 @@ order_done (GObject *source, GAsyncResult *result, gpointer data)
   if (order->live)
     live_done (self, order, measure, error);
   else if (order->serial == self->draft_serial)
-    {
-      take_measure (self, measure, error);
-      self->at_rest = self->measured;
-      tf_session_emit (self, TF_SIGNAL_CHOICE);
-    }
+    rest_done (self, order, measure, error);
   g_clear_pointer (&measure, measure_free);
 }
 
@@ -170,6 +187,7 @@ order_measure (TfSession *self, TfOutline *outline, gboolean live)
   order->params.outline_term = !live;
   order->serial = self->draft_serial;
   order->live = live;
+  order->other = outline == self->other;
   order->n_line = self->line->len;
   g_autoptr (GTask) task = g_task_new (NULL, NULL, order_done, g_object_ref (self));
   g_task_set_task_data (task, order, order_free);
@@ -251,12 +269,6 @@ tf_session_measure_split (TfSession *self, TfVertex a, TfVertex b)
 }
 
 void
-tf_session_measure_other (TfSession *self)
-{
-  measure_half (self, self->other);
-}
-
-void
 tf_session_measure_draft (TfSession *self)
 {
   if (!self->slow)
@@ -267,5 +279,10 @@ tf_session_measure_draft (TfSession *self)
       say_problem (self, _ ("Measuring…"));
       tf_session_judge_choice (self);
     }
+  if (self->other != NULL)
+    measure_half (self, self->other);
   order_measure (self, self->draft, FALSE);
+  if (self->other != NULL)
+    order_measure (self, self->other, FALSE);
+  tf_session_ask_join (self);
 }

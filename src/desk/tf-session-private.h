@@ -107,6 +107,7 @@ struct _TfSession
   gboolean want_next_hint;
   gboolean want_new; /* what undoing or redoing brings back is chosen */
   char *want_region; /* the same on another frame, where there is nothing to compare with: its number; NULL */
+  GPtrArray *seen;   /* TfRegionItem: what was there when undoing was asked for; NULL */
 
   TfTool tool;
   GArray *line; /* TfVertex, Carrington */
@@ -123,7 +124,7 @@ struct _TfSession
   gboolean live_busy;    /* a worker measures the line in hand */
   TfOutline *other;      /* the second half of a split */
   TfMeasure other_measure;
-  gboolean other_measured;
+  gboolean other_measured, other_at_rest;
   GPtrArray *joined;     /* TfRegionItem: that a join takes the place of, besides replaced */
   GHashTable *histories; /* of drafts, by the frame's id */
   double brush_deg;
@@ -142,6 +143,20 @@ struct _TfSession
   gboolean list_shown;
   TfShift *shift;    /* as last read; NULL */
   guint shift_asked; /* readings on their way */
+
+  TfUnits units;
+
+  TfProposal *proposal;      /* for proposal_base; NULL */
+  TfOutline *proposal_base;  /* for which it was looked for; NULL */
+  TfOutline *proposal_left;  /* for which it was put away; NULL */
+  guint proposal_serial;
+
+  TfLane *follower; /* passages are made anew there; NULL */
+  TfCancel *follow_cancel;
+  gboolean passages_due; /* marks were drawn since */
+  GHashTable *joins;     /* hint -> number of the region it joins when kept; NULL */
+  char *draft_joins[2];  /* likewise of the draft and the other half; NULL */
+  guint join_serial;
 
   GArray *points;    /* TfPoint */
   GArray *all_dots;  /* TfWingsDot, one a point */
@@ -170,12 +185,10 @@ void tf_session_judge_choice (TfSession *session);
 void tf_session_drop_draft (TfSession *session);
 /** tf_session_forget_measure: what a worker still has in hand will be dropped. */
 void tf_session_forget_measure (TfSession *session);
-/** tf_session_measure_draft: at once, and by a worker with the outline term. */
+/** tf_session_measure_draft: and the other half, when there is one: at once, and by workers with the outline term. */
 void tf_session_measure_draft (TfSession *session);
 /** tf_session_measure_live: at once or by a worker, without the outline term. */
 void tf_session_measure_live (TfSession *session, TfOutline *outline);
-/** tf_session_measure_other: the second half, at once. */
-void tf_session_measure_other (TfSession *session);
 /* tf-session-hand.c */
 void tf_session_init_hand (TfSession *session);
 void tf_session_clear_hand (TfSession *session);
@@ -188,6 +201,8 @@ gboolean tf_session_step_back (TfSession *session, gboolean forward);
  * the place of when there was no draft. */
 void tf_session_change_draft (TfSession *session, TfOutline *outline, TfOutline *other);
 void tf_session_measure_split (TfSession *session, TfVertex a, TfVertex b);
+/** tf_session_note_seen: what undoing or redoing brings back is what is not there now. */
+void tf_session_note_seen (TfSession *session);
 /* tf-session-choice.c */
 void tf_session_choose_also_again (TfSession *session);
 /* tf-session-carry.c */
@@ -196,6 +211,19 @@ void tf_session_add_carried (TfSession *session, GPtrArray *items);
 gboolean tf_session_drop_carried (TfSession *session, TfRegionItem *item);
 TfRegionItem *tf_session_find_hint_of_carried (TfSession *session, TfRegionItem *carried);
 gint64 tf_session_get_continued_key (TfSession *session, TfRegionItem *hint);
+/* tf-session-proposal.c */
+void tf_session_init_proposal (TfSession *session);
+void tf_session_clear_proposal (TfSession *session);
+/* tf-session-join.c */
+/** tf_session_find_person: local key of a name that the ledger knows; 0: it is not recorded by asking. */
+gint64 tf_session_find_person (TfLedger *ledger, const char *name);
+/** tf_session_make_passages: anew, off the main thread. */
+void tf_session_make_passages (TfSession *session);
+/** tf_session_read_joins: in a lane: hint -> number of the region it joins when kept. */
+GHashTable *tf_session_read_joins (TfLedger *ledger, const GPtrArray *rows, gint64 person);
+/** tf_session_ask_join: which regions the draft and the other half would join. */
+void tf_session_ask_join (TfSession *session);
+void tf_session_close_join (TfSession *session);
 void tf_session_update_pick (TfSession *session);
 /** tf_session_restore_draft: from the ledger's text */
 void tf_session_restore_draft (TfSession *session, const char *text);

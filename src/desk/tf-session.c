@@ -46,6 +46,7 @@ dispose (GObject *object)
   tf_session_clear_witness (self);
   tf_session_clear_roll (self);
   tf_session_clear_overlays (self);
+  tf_session_clear_proposal (self);
   g_clear_pointer (&self->loader, tf_loader_free);
   g_clear_pointer (&self->frame, tf_frame_unref);
   g_clear_object (&self->frame_item);
@@ -81,6 +82,7 @@ finalize (GObject *object)
   g_free (self->progress);
   g_free (self->feed_trouble);
   g_free (self->draft_text);
+  g_clear_pointer (&self->seen, g_ptr_array_unref);
   g_clear_pointer (&self->shift, tf_shift_free);
   tf_judge_unref (self->judge);
   tf_workers_unref (self->workers);
@@ -131,6 +133,7 @@ tf_session_init (TfSession *self)
   tf_session_init_hand (self);
   tf_session_init_overlays (self);
   tf_session_init_witness (self);
+  tf_session_init_proposal (self);
 }
 
 TfSession *
@@ -172,6 +175,25 @@ tf_session_set_params (TfSession *self, const TfMeasureParams *params)
   if (self->draft != NULL && self->frame != NULL)
     tf_session_measure_draft (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);
+}
+
+TfUnits
+tf_session_get_units (TfSession *self)
+{
+  return self->units;
+}
+
+void
+tf_session_set_unit (TfSession *self, TfUnitKind kind, guint choice)
+{
+  static const TfSessionSignal shown_by[]
+      = { TF_SIGNAL_FRAME, TF_SIGNAL_VIEW, TF_SIGNAL_CHOICE, TF_SIGNAL_SHIFT };
+  g_return_if_fail (TF_IS_SESSION (self) && kind < TF_N_UNITS && choice < 2);
+  if (self->units.choice[kind] == choice)
+    return;
+  self->units.choice[kind] = choice;
+  for (guint k = 0; k < G_N_ELEMENTS (shown_by); k++)
+    tf_session_emit (self, shown_by[k]);
 }
 
 TfJudge *
@@ -247,16 +269,33 @@ find_choice (TfSession *self, gint64 mark, gboolean is_hint)
   return NULL;
 }
 
-/* The first of @items that the list does not hold. */
+void
+tf_session_note_seen (TfSession *self)
+{
+  guint n = g_list_model_get_n_items (G_LIST_MODEL (self->regions));
+  g_clear_pointer (&self->seen, g_ptr_array_unref);
+  self->seen = g_ptr_array_new_with_free_func (g_object_unref);
+  for (guint k = 0; k < n; k++)
+    g_ptr_array_add (self->seen, g_list_model_get_item (G_LIST_MODEL (self->regions), k));
+}
+
+static gboolean
+was_seen (TfSession *self, const TfRow *row)
+{
+  for (guint k = 0; self->seen != NULL && k < self->seen->len; k++)
+    if (tf_region_item_is (self->seen->pdata[k], row->mark, row->is_hint))
+      return TRUE;
+  return FALSE;
+}
+
+/* The first of @items that was not there before undoing: the list itself may have been read anew
+ * meanwhile. */
 static TfRegionItem *
 find_new (TfSession *self, const GPtrArray *items)
 {
   for (guint k = 0; k < items->len; k++)
-    {
-      const TfRow *row = tf_region_item_get_row (items->pdata[k]);
-      if (find_choice (self, row->mark, row->is_hint) == NULL)
-        return items->pdata[k];
-    }
+    if (!was_seen (self, tf_region_item_get_row (items->pdata[k])))
+      return items->pdata[k];
   return NULL;
 }
 

@@ -29,6 +29,8 @@
 #include "tf-picture.h"
 #include "tf-region-item.h"
 #include "tf-shift.h"
+#include "tf-split.h"
+#include "tf-units.h"
 
 G_BEGIN_DECLS
 
@@ -237,6 +239,10 @@ gboolean tf_session_carry (TfSession *session);
 /** tf_session_carry_on: goes to the next frame and offers the chosen regions there. */
 gboolean tf_session_can_carry_on (TfSession *session);
 gboolean tf_session_carry_on (TfSession *session);
+/** tf_session_get_joins: (nullable): number of the region that what K keeps is then a mark of, since its passage has that one region or it was
+ * carried; NULL: a new region, or (a mark) its own. tf_session_get_other_joins: likewise of the other half of a split. */
+const char *tf_session_get_joins (TfSession *session);
+const char *tf_session_get_other_joins (TfSession *session);
 /** tf_session_get_continued: (nullable): number of the carried region that a hint continues */
 const char *tf_session_get_continued (TfSession *session, TfRegionItem *hint);
 
@@ -256,6 +262,19 @@ gboolean tf_session_split (TfSession *session, TfVertex a, TfVertex b);
 gboolean tf_session_leave_out (TfSession *session, const TfVertex *ring, guint n);
 /** tf_session_pin_pole: @polarity 1, -1; 0 takes the pins away */
 gboolean tf_session_pin_pole (TfSession *session, int polarity, double lon_deg, double lat_deg, const char *reason);
+
+/* -- the split that is proposed (tf-session-proposal.c) */
+typedef struct
+{
+  TfSplitLine line;
+  TfOutline *outline[2]; /* the stronger half first */
+  TfMeasure half[2];     /* without the outline term */
+} TfProposal;
+/** tf_session_get_proposal: (nullable): for what is in hand at rest when it has more pieces than one bipole; comes with "choice-changed" */
+const TfProposal *tf_session_get_proposal (TfSession *session);
+gboolean tf_session_split_proposed (TfSession *session);
+/** tf_session_leave_proposal: it is not shown again for this outline. FALSE when there is none. */
+gboolean tf_session_leave_proposal (TfSession *session);
 
 /** TfCornerPlace: one corner of the base */
 typedef struct
@@ -307,6 +326,9 @@ const char *tf_session_get_method (TfSession *session);
  * measured anew; the method's text goes with every mark. */
 const TfMeasureParams *tf_session_get_params (TfSession *session);
 void tf_session_set_params (TfSession *session, const TfMeasureParams *params);
+/** tf_session_get_units: in which the window shows numbers; set, all that shows them is told. */
+TfUnits tf_session_get_units (TfSession *session);
+void tf_session_set_unit (TfSession *session, TfUnitKind kind, guint choice);
 TfJudge *tf_session_get_judge (TfSession *session);
 const TfDivides *tf_session_get_divides (TfSession *session);
 
@@ -314,6 +336,9 @@ const TfDivides *tf_session_get_divides (TfSession *session);
  * twins) */
 gboolean tf_session_can_keep (TfSession *session);
 gboolean tf_session_keep (TfSession *session);
+/** tf_session_keep_new: as a new region, whatever its passage belongs to. */
+gboolean tf_session_can_keep_new (TfSession *session);
+gboolean tf_session_keep_new (TfSession *session);
 gboolean tf_session_can_drop (TfSession *session);
 gboolean tf_session_drop (TfSession *session);
 gboolean tf_session_can_withdraw (TfSession *session);

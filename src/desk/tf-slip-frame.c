@@ -32,20 +32,20 @@ dup_sentences (const TfNotes *notes)
 }
 
 static void
-append_noise (GString *text, TfFrame *frame)
+append_noise (GString *text, TfFrame *frame, TfUnits units)
 {
   guint n;
   if (frame == NULL || tf_frame_get_noise (frame, &n) == NULL || n == 0)
     return;
   gboolean map = tf_geometry_is_map (tf_frame_get_geometry (frame));
-  g_autofree char *noise = tf_words_dup_number (tf_frame_noise_at (frame, map ? 0 : 1), 1);
+  g_autofree char *noise = tf_units_dup_field (units, tf_frame_noise_at (frame, map ? 0 : 1), 1);
   g_string_append_printf (
-      text, map ? _ ("\nnoise %s G at the equator") : _ ("\nnoise %s G at the disk’s centre"),
+      text, map ? _ ("\nnoise %s at the equator") : _ ("\nnoise %s at the disk’s centre"),
       noise);
 }
 
 static char *
-dup_facts (const TfFrameRow *row, TfFrame *frame)
+dup_facts (const TfFrameRow *row, TfFrame *frame, TfUnits units)
 {
   const TfFrameInfo *info = row->info;
   GString *text = g_string_new (NULL);
@@ -66,7 +66,7 @@ dup_facts (const TfFrameRow *row, TfFrame *frame)
       = { N_ ("field of unknown direction"), N_ ("line-of-sight field"), N_ ("radial field") };
   if (info->role == TF_ROLE_FIELD)
     g_string_append_printf (text, "\n%s", _ (fields[info->field]));
-  append_noise (text, frame);
+  append_noise (text, frame, units);
   if (info->simulated)
     g_string_append (text, _ ("\nsimulated: an invented Sun"));
   return g_string_free (text, FALSE);
@@ -171,7 +171,7 @@ show (TfSlipFrame *self)
     }
   const TfFrameRow *row = tf_frame_item_get_row (item);
   g_autofree char *time = tf_time_dup_iso (row->info->time, 0);
-  g_autofree char *facts = dup_facts (row, frame);
+  g_autofree char *facts = dup_facts (row, frame, tf_session_get_units (self->session));
   gtk_label_set_label (self->title, time != NULL ? time : _ ("time unknown"));
   gtk_label_set_label (self->facts, facts);
   gtk_label_set_label (self->next, row->refusal != NULL ? row->refusal

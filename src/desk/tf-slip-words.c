@@ -131,17 +131,6 @@ pole_of (const TfMeasure *m, gboolean leading)
   return positive ? &m->positive : &m->negative;
 }
 
-/* "6.1·10²¹" without its unit */
-static char *
-dup_flux_bare (double mx)
-{
-  char *text = tf_chart_dup_flux (mx);
-  char *unit = g_strrstr (text, " Mx");
-  if (unit != NULL)
-    *unit = '\0';
-  return text;
-}
-
 /* -- values ---------------------------------------------------------------------------------- */
 
 static char *
@@ -156,23 +145,23 @@ value_tilt (const TfMeasure *m)
 }
 
 static char *
-value_flux (const TfMeasure *m, gboolean leading)
+value_flux (const TfReading *r, gboolean leading)
 {
+  const TfMeasure *m = r->measure;
   const TfPole *pole = pole_of (m, leading);
   if (m->leading_polarity == 0 && pole->pixels == 0)
     return g_strdup ("—");
-  g_autofree char *flux = tf_chart_dup_flux (pole->flux_mx);
+  g_autofree char *flux = tf_units_dup_flux (r->units, pole->flux_mx);
   return g_strdup_printf ("%s %s", pole == &m->positive ? "+" : "−", flux);
 }
 
 static char *
-value_separation (const TfMeasure *m)
+value_separation (const TfReading *r)
 {
+  const TfMeasure *m = r->measure;
   if (!isfinite (m->separation_deg))
     return g_strdup ("—");
-  g_autofree char *deg = tf_words_dup_number (m->separation_deg, 1),
-                  *mm = tf_words_dup_number (m->separation_mm, 0);
-  return g_strdup_printf (_ ("%s° · %s Mm"), deg, mm);
+  return tf_units_dup_length (r->units, m->separation_deg, 1, m->separation_mm, 0);
 }
 
 static char *
@@ -183,10 +172,10 @@ value_shape (const TfMeasure *m)
 }
 
 static char *
-value_floor (const TfMeasure *m)
+value_floor (const TfReading *r)
 {
-  g_autofree char *floor = tf_words_dup_number (m->floor_gauss, 0);
-  return g_strdup_printf (m->floor_kind == TF_FLOOR_EVEN ? _ ("even, %s G") : _ ("local, %s G"),
+  g_autofree char *floor = tf_units_dup_field (r->units, r->measure->floor_gauss, 0);
+  return g_strdup_printf (r->measure->floor_kind == TF_FLOOR_EVEN ? _ ("even, %s") : _ ("local, %s"),
                           floor);
 }
 
@@ -198,15 +187,15 @@ tf_line_dup_value (TfLine line, const TfReading *r)
     case TF_LINE_TILT:
       return value_tilt (r->measure);
     case TF_LINE_LEADING:
-      return value_flux (r->measure, TRUE);
+      return value_flux (r, TRUE);
     case TF_LINE_FOLLOWING:
-      return value_flux (r->measure, FALSE);
+      return value_flux (r, FALSE);
     case TF_LINE_SEPARATION:
-      return value_separation (r->measure);
+      return value_separation (r);
     case TF_LINE_SHAPE:
       return value_shape (r->measure);
     case TF_LINE_FLOOR:
-      return value_floor (r->measure);
+      return value_floor (r);
     case TF_N_LINES:
     default:
       g_return_val_if_reached (NULL);
@@ -246,12 +235,13 @@ under_tilt (const TfReading *r)
 }
 
 static char *
-under_flux (const TfMeasure *m, gboolean leading)
+under_flux (const TfReading *r, gboolean leading)
 {
+  const TfMeasure *m = r->measure;
   const TfPole *pole = pole_of (m, leading);
   if (!(m->flux_unsigned_mx > 0))
     return NULL;
-  g_autofree char *sigma = dup_flux_bare (pole->flux_sigma_mx);
+  g_autofree char *sigma = tf_units_dup_flux_bare (r->units, pole->flux_sigma_mx);
   GString *text = g_string_new (NULL);
   g_string_append_printf (text, _ ("± %s · %.0f %% of the flux"), sigma,
                           100 * pole->flux_mx / m->flux_unsigned_mx);
@@ -261,14 +251,15 @@ under_flux (const TfMeasure *m, gboolean leading)
 }
 
 static char *
-under_separation (const TfMeasure *m)
+under_separation (const TfReading *r)
 {
+  const TfMeasure *m = r->measure;
   if (!isfinite (m->separation_deg))
     return NULL;
-  g_autofree char *deg = tf_words_dup_number (m->separation_sigma_deg, 2);
-  g_autofree char *mm
-      = tf_words_dup_number (m->separation_sigma_deg * m->separation_mm / m->separation_deg, 1);
-  return g_strdup_printf (_ ("± %s° · ± %s Mm"), deg, mm);
+  g_autofree char *sigma = tf_units_dup_length (
+      r->units, m->separation_sigma_deg, 2,
+      m->separation_sigma_deg * m->separation_mm / m->separation_deg, 1);
+  return g_strdup_printf ("± %s", sigma);
 }
 
 static char *
@@ -281,12 +272,13 @@ under_shape (const TfMeasure *m)
 }
 
 static char *
-under_floor (const TfMeasure *m)
+under_floor (const TfReading *r)
 {
-  g_autofree char *noise = tf_words_dup_number (m->noise_gauss, 1),
+  const TfMeasure *m = r->measure;
+  g_autofree char *noise = tf_units_dup_field (r->units, m->noise_gauss, 1),
                   *mu = tf_words_dup_number (m->mu, 2);
   const char *why = m->floor_kind == TF_FLOOR_LOCAL ? _ ("of this single look\n") : "";
-  return g_strdup_printf (_ ("%snoise %s G · μ %s"), why, noise, mu);
+  return g_strdup_printf (_ ("%snoise %s · μ %s"), why, noise, mu);
 }
 
 char *
@@ -297,15 +289,15 @@ tf_line_dup_under (TfLine line, const TfReading *r)
     case TF_LINE_TILT:
       return under_tilt (r);
     case TF_LINE_LEADING:
-      return under_flux (r->measure, TRUE);
+      return under_flux (r, TRUE);
     case TF_LINE_FOLLOWING:
-      return under_flux (r->measure, FALSE);
+      return under_flux (r, FALSE);
     case TF_LINE_SEPARATION:
-      return under_separation (r->measure);
+      return under_separation (r);
     case TF_LINE_SHAPE:
       return under_shape (r->measure);
     case TF_LINE_FLOOR:
-      return under_floor (r->measure);
+      return under_floor (r);
     case TF_N_LINES:
     default:
       g_return_val_if_reached (NULL);
@@ -363,12 +355,12 @@ tf_line_dup_how (TfLine line, const TfReading *r)
   const TfMeasure *m = r->measure;
   GString *text = g_string_new (_ (how_texts[line]));
   append_source (text, line);
-  g_autofree char *floor = tf_words_dup_number (m->floor_gauss, 1);
+  g_autofree char *floor = tf_units_dup_field (r->units, m->floor_gauss, 1);
   g_string_append_printf (text, _ ("\n\nPixels above the floor: %u positive, %u negative."),
                           m->positive.pixels, m->negative.pixels);
   g_string_append_printf (text,
-                          m->floor_kind == TF_FLOOR_EVEN ? _ ("\nFloor: even, %s G.")
-                                                         : _ ("\nFloor: local, %s G here."),
+                          m->floor_kind == TF_FLOOR_EVEN ? _ ("\nFloor: even, %s.")
+                                                         : _ ("\nFloor: local, %s here."),
                           floor);
   static const char *const used[]
       = { N_ ("radial (line of sight / μ)"), N_ ("as observed"), N_ ("potential-field estimate") };

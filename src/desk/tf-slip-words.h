@@ -8,6 +8,7 @@
 
 #include "tf-frame-item.h"
 #include "tf-judge.h"
+#include "tf-units.h"
 
 G_BEGIN_DECLS
 
@@ -30,6 +31,7 @@ typedef struct
   const TfSampleRow *row;
   const char *method; /* canonical text */
   gboolean at_rest;   /* the outline term is in */
+  TfUnits units;
 } TfReading;
 
 const char *tf_line_name (TfLine line);

@@ -9,7 +9,9 @@
 
 #include "tf-dial-view.h"
 #include "tf-joy.h"
+#include "tf-how.h"
 #include "tf-slip-frame.h"
+#include "tf-slip-how.h"
 #include "tf-slip-row.h"
 #include "tf-slip-words.h"
 
@@ -17,10 +19,12 @@ struct _TfSlip
 {
   GtkWidget parent;
   GtkStack *stack;
-  GtkLabel *title, *place, *origin, *longitude, *saved, *problem, *verdict, *verdict_why, *cautions, *also;
+  GtkLabel *title, *place, *origin, *longitude, *saved, *problem, *verdict, *verdict_why, *cautions, *also,
+      *joins, *proposal;
+  TfHow *place_how, *verdict_how, *class_how, *cautions_how, *joins_how, *proposal_how;
   TfDialView *dial;
   TfVerdictSign *sign;
-  GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box;
+  GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box, *joins_box, *proposal_box;
   GtkCheckButton *replaces;
   GtkBox *rows, *more_rows;
   TfSlipRow *row[TF_N_LINES];
@@ -47,6 +51,50 @@ set_label (GtkLabel *label, const char *text)
 }
 
 /* -- the head -------------------------------------------------------------------------------- */
+
+/* A label inside a button goes with its button. */
+static void
+set_how (TfHow *button, GtkLabel *label, const char *name, const char *value, char *how)
+{
+  set_label (label, value);
+  gtk_widget_set_visible (GTK_WIDGET (button), value != NULL && value[0] != '\0');
+  if (value != NULL)
+    tf_how_set (button, name, value, how);
+  g_free (how);
+}
+
+static void
+show_joins (TfSlip *self)
+{
+  const char *number = tf_session_get_joins (self->session),
+             *other = tf_session_get_other_joins (self->session);
+  g_autofree char *text = NULL;
+  if (number != NULL && other != NULL)
+    text = g_strdup_printf (_ ("joins %s, its other half %s"), number, other);
+  else if (number != NULL)
+    text = g_strdup_printf (_ ("joins %s"), number);
+  else if (other != NULL)
+    text = g_strdup_printf (_ ("its other half joins %s"), other);
+  gtk_widget_set_visible (self->joins_box, text != NULL);
+  if (text != NULL)
+    set_how (self->joins_how, self->joins, _ ("region"), text, tf_how_dup_joins ());
+}
+
+static void
+show_proposal (TfSlip *self)
+{
+  const TfProposal *proposal = tf_session_get_proposal (self->session);
+  TfUnits units = tf_session_get_units (self->session);
+  gtk_widget_set_visible (self->proposal_box, proposal != NULL);
+  if (proposal == NULL)
+    return;
+  g_autofree char *first = tf_words_dup_half (&proposal->half[0], units),
+                  *second = tf_words_dup_half (&proposal->half[1], units);
+  g_autofree char *text
+      = g_strdup_printf (_ ("Not one bipole? A split is proposed:\n• %s\n• %s"), first, second);
+  set_how (self->proposal_how, self->proposal, _ ("proposed split"), text,
+           tf_how_dup_proposal (proposal, units));
+}
 
 static void
 show_replaces (TfSlip *self)
@@ -93,31 +141,16 @@ draft_title (TfSlip *self)
 }
 
 static char *
-dup_hint_origin (TfSlip *self, TfRegionItem *region)
+dup_hint_origin (TfRegionItem *region)
 {
   const TfRow *row = tf_region_item_get_row (region);
-  const char *continued = tf_session_get_continued (self->session, region);
   if (tf_region_item_is_carried (region))
     return g_strdup (_ ("carried from a frame before · nobody has judged it"));
-  if (continued != NULL)
-    return g_strdup_printf (_ ("a hint · continues %s"), continued);
   return g_strdup (row->unipolar ? _ ("a hint of one polarity · nobody has judged it")
                                  : _ ("a hint · nobody has judged it"));
 }
 
 /* What goes with it: the other half of a split, others chosen, a pinned pole. */
-static void
-append_half (GString *text, const TfMeasure *m)
-{
-  g_autofree char *tilt = tf_words_dup_signed (m->axis_tilt_deg, 1),
-                  *noise = tf_words_dup_number (m->tilt_terms.total, 1),
-                  *flux = tf_chart_dup_flux (m->flux_unsigned_mx);
-  if (m->leading_polarity == 0)
-    g_string_append_printf (text, _ ("Other half: one polarity, no tilt, flux %s\n"), flux);
-  else
-    g_string_append_printf (text, _ ("Other half: tilt %s° ± %s°, flux %s\n"), tilt, noise, flux);
-}
-
 static void
 show_also (TfSlip *self, gboolean drawing)
 {
@@ -126,7 +159,10 @@ show_also (TfSlip *self, gboolean drawing)
   TfOutline *base = tf_session_get_base (self->session);
   guint n = tf_session_get_n_chosen (self->session);
   if (half != NULL)
-    append_half (text, half);
+    {
+      g_autofree char *words = tf_words_dup_half (half, tf_session_get_units (self->session));
+      g_string_append_printf (text, _ ("Other half: %s\n"), words);
+    }
   if (!drawing && n > 1)
     g_string_append_printf (
         text, _ ("%u chosen: Keep, Drop, Withdraw and the class are for all of them\n"), n);
@@ -154,12 +190,13 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
                            ? _ ("not kept yet")
                            : _ ("close the line to make a draft"));
   else if (row->is_hint)
-    origin = dup_hint_origin (self, region);
+    origin = dup_hint_origin (region);
   else
     origin = g_strdup_printf ("%s · %s", origin_words (row->origin), row->person);
   set_label (self->title, row == NULL    ? draft_title (self)
                           : row->region[0] == '\0' ? _ ("Hint")
                                                    : row->region);
+  gtk_widget_set_visible (GTK_WIDGET (self->place_how), measure != NULL);
   set_label (self->place, place);
   set_label (self->longitude, longitude);
   set_label (self->origin, origin);
@@ -167,8 +204,10 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
   gtk_widget_set_visible (self->drop, row != NULL && row->is_hint);
   gtk_widget_set_visible (self->discard, drawing);
   gtk_widget_set_visible (self->withdraw, row != NULL && !row->is_hint);
+  show_joins (self);
   show_replaces (self);
   show_also (self, drawing);
+  show_proposal (self);
 }
 
 /* -- dial, verdict, numbers ------------------------------------------------------------------ */
@@ -188,8 +227,9 @@ show_dial (TfSlip *self, const TfMeasure *m, const TfVerdict *verdict)
 }
 
 static void
-show_verdict (TfSlip *self, const TfVerdict *verdict)
+show_verdict (TfSlip *self, const TfReading *reading)
 {
+  const TfVerdict *verdict = reading->verdict;
   static const TfDiamond signs[] = { [TF_VERDICT_CANNOT_SAY] = TF_DIAMOND_HOLLOW,
                                      [TF_VERDICT_KEEPS] = TF_DIAMOND_PLAIN,
                                      [TF_VERDICT_BREAKS] = TF_DIAMOND_STRUCK };
@@ -200,21 +240,25 @@ show_verdict (TfSlip *self, const TfVerdict *verdict)
   tf_words_split_verdict (sentence, &said, &why);
   set_label (self->verdict, said);
   set_label (self->verdict_why, why);
+  g_autofree char *how = tf_how_dup_verdict (reading, tf_session_get_judge (self->session));
+  tf_how_set (self->verdict_how, _ ("verdict"), sentence, how);
   gtk_widget_remove_css_class (GTK_WIDGET (self->verdict), "breaks");
   if (verdict->kind == TF_VERDICT_BREAKS)
     gtk_widget_add_css_class (GTK_WIDGET (self->verdict), "breaks");
 }
 
 static void
-show_cautions (TfSlip *self, const TfMeasure *m)
+show_cautions (TfSlip *self, const TfReading *reading)
 {
+  const TfMeasure *m = reading->measure;
   GString *text = g_string_new (NULL);
   for (guint k = 0; k < tf_notes_get_n (m->cautions); k++)
     {
       g_autofree char *sentence = tf_note_dup_text (tf_notes_get (m->cautions, k), FALSE);
       g_string_append_printf (text, "%s%s", k > 0 ? "\n\n" : "", sentence);
     }
-  set_label (self->cautions, text->str);
+  set_how (self->cautions_how, self->cautions, _ ("cautions"), text->str,
+           tf_how_dup_cautions (reading));
   g_string_free (text, TRUE);
 }
 
@@ -226,7 +270,8 @@ show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
                         .verdict = &verdict,
                         .row = tf_session_get_sample (self->session),
                         .method = method,
-                        .at_rest = tf_session_is_at_rest (self->session) };
+                        .at_rest = tf_session_is_at_rest (self->session),
+                        .units = tf_session_get_units (self->session) };
   for (guint k = 0; k < TF_N_LINES; k++)
     {
       g_autofree char *value = tf_line_dup_value (k, &reading),
@@ -235,8 +280,10 @@ show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
       tf_slip_row_set (self->row[k], tf_line_name (k), value, under, how);
     }
   show_dial (self, m, &verdict);
-  show_verdict (self, &verdict);
-  show_cautions (self, m);
+  show_verdict (self, &reading);
+  show_cautions (self, &reading);
+  g_autofree char *where = tf_how_dup_place (&reading, self->session);
+  tf_how_set (self->place_how, _ ("place"), gtk_label_get_label (self->place), where);
 }
 
 /* -- class and note -------------------------------------------------------------------------- */
@@ -372,6 +419,8 @@ show_judged (TfSlip *self, TfRegionItem *region, gboolean drawing)
     }
   const TfRow *row = tf_region_item_get_row (region);
   self->setting = TRUE;
+  g_autofree char *how = tf_how_dup_class (row);
+  tf_how_set (self->class_how, _ ("class"), row->mw_class[0] != '\0' ? row->mw_class : _ ("none"), how);
   show_class (self, row->mw_class);
   show_note (self, region);
   self->setting = FALSE;
@@ -401,7 +450,7 @@ choice_changed (TfSlip *self)
   gtk_widget_set_visible (self->numbers, m != NULL);
   gtk_widget_set_visible (GTK_WIDGET (self->more_rows), m != NULL);
   if (m == NULL)
-    set_label (self->cautions, NULL);
+    set_how (self->cautions_how, self->cautions, "", NULL, NULL);
   set_label (self->problem, m == NULL ? tf_session_get_measure_problem (self->session) : NULL);
   if (m != NULL)
     show_numbers (self, m, method);
@@ -510,6 +559,16 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfSlip, label_entry);
   gtk_widget_class_bind_template_child (widget, TfSlip, external_entry);
   gtk_widget_class_bind_template_child (widget, TfSlip, frame_page);
+  gtk_widget_class_bind_template_child (widget, TfSlip, joins);
+  gtk_widget_class_bind_template_child (widget, TfSlip, joins_box);
+  gtk_widget_class_bind_template_child (widget, TfSlip, proposal);
+  gtk_widget_class_bind_template_child (widget, TfSlip, proposal_box);
+  gtk_widget_class_bind_template_child (widget, TfSlip, place_how);
+  gtk_widget_class_bind_template_child (widget, TfSlip, verdict_how);
+  gtk_widget_class_bind_template_child (widget, TfSlip, class_how);
+  gtk_widget_class_bind_template_child (widget, TfSlip, cautions_how);
+  gtk_widget_class_bind_template_child (widget, TfSlip, joins_how);
+  gtk_widget_class_bind_template_child (widget, TfSlip, proposal_how);
 }
 
 static void
@@ -521,6 +580,7 @@ tf_slip_class_init (TfSlipClass *klass)
   g_type_ensure (TF_TYPE_DIAL_VIEW);
   g_type_ensure (TF_TYPE_VERDICT_SIGN);
   g_type_ensure (TF_TYPE_SLIP_FRAME);
+  g_type_ensure (TF_TYPE_HOW);
   gtk_widget_class_set_layout_manager_type (widget, GTK_TYPE_BIN_LAYOUT);
   gtk_widget_class_set_css_name (widget, "slip");
   gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/slip.ui");

@@ -118,12 +118,14 @@ ACTION (draw) { toggle_tool (window, TF_TOOL_OUTLINE); }
 ACTION (polygon) { toggle_tool (window, TF_TOOL_POLYGON); }
 ACTION (finish_drawing) { tf_session_finish_line (session_of (window)); }
 
-/* First the tool or the line in hand, then the draft, then the choice. */
+/* First the tool or the line in hand, then the split proposed, then the draft, then the choice. */
 ACTION (cancel_drawing)
 {
   TfSession *session = session_of (window);
   if (tf_session_get_tool (session) != TF_TOOL_NONE)
     tf_session_set_tool (session, TF_TOOL_NONE);
+  else if (tf_session_leave_proposal (session))
+    return;
   else if (tf_session_get_draft (session) != NULL)
     tf_session_discard_draft (session);
   else
@@ -235,6 +237,7 @@ tf_window_add_actions (TfWindow *self)
   tf_window_add_frame_actions (self);
   tf_window_add_list_actions (self);
   tf_window_add_tool_actions (self);
+  tf_window_add_mark_actions (self);
 }
 
 static void
@@ -319,4 +322,5 @@ tf_window_update_actions (TfWindow *self)
   tf_window_update_frame_actions (self);
   tf_window_update_list_actions (self);
   tf_window_update_tool_actions (self);
+  tf_window_update_mark_actions (self);
 }

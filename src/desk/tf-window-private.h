@@ -38,6 +38,11 @@ void tf_window_show_list (TfWindow *window, gboolean list);
 /* tf-actions-tools.c */
 void tf_window_add_tool_actions (TfWindow *window);
 void tf_window_update_tool_actions (TfWindow *window);
+/* tf-actions-mark.c */
+void tf_window_add_mark_actions (TfWindow *window);
+void tf_window_update_mark_actions (TfWindow *window);
+/** tf_window_restore_units: as the preferences say. */
+void tf_window_restore_units (TfWindow *window);
 /* tf-window-pin.c, tf-journal-view.c */
 void tf_window_ask_pin (TfWindow *window, double lon_deg, double lat_deg);
 /** tf_window_show_journal: @region: (nullable): of it alone */

@@ -117,6 +117,7 @@ main (int argc, char **argv)
     adw_init ();
   test_desk_add_words ();
   test_desk_add_session ();
+  test_desk_add_mark ();
   test_desk_add_plate ();
   test_desk_add_roll ();
   test_desk_add_follow ();

@@ -23,6 +23,7 @@ void test_desk_add_geometry (void);
 void test_desk_add_hand (void);
 void test_desk_add_keys (void);
 void test_desk_add_list (void);
+void test_desk_add_mark (void);
 void test_desk_add_plate (void);
 void test_desk_add_roll (void);
 void test_desk_add_session (void);
