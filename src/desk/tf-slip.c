@@ -26,7 +26,7 @@ struct _TfSlip
   TfVerdictSign *sign;
   GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box, *joins_box, *proposal_box;
   GtkCheckButton *replaces;
-  GtkBox *rows, *more_rows;
+  GtkBox *page, *rows, *more_rows;
   TfSlipRow *row[TF_N_LINES];
   GtkToggleButton *class_alpha, *class_beta, *class_beta_gamma, *class_gamma, *class_delta;
   GtkTextView *note;
@@ -80,9 +80,12 @@ show_joins (TfSlip *self)
     set_how (self->joins_how, self->joins, _ ("region"), text, tf_how_dup_joins ());
 }
 
+/* Before it is judged the proposal is what matters; a mark's class and note stay where they are. */
 static void
-show_proposal (TfSlip *self)
+show_proposal (TfSlip *self, gboolean mark)
 {
+  gtk_box_reorder_child_after (self->page, self->proposal_box,
+                               mark ? self->judged : GTK_WIDGET (self->also));
   const TfProposal *proposal = tf_session_get_proposal (self->session);
   TfUnits units = tf_session_get_units (self->session);
   gtk_widget_set_visible (self->proposal_box, proposal != NULL);
@@ -207,7 +210,7 @@ show_head (TfSlip *self, gboolean drawing, TfRegionItem *region, const TfMeasure
   show_joins (self);
   show_replaces (self);
   show_also (self, drawing);
-  show_proposal (self);
+  show_proposal (self, row != NULL && !row->is_hint);
 }
 
 /* -- dial, verdict, numbers ------------------------------------------------------------------ */
@@ -560,6 +563,7 @@ bind_children (GtkWidgetClass *widget)
   gtk_widget_class_bind_template_child (widget, TfSlip, external_entry);
   gtk_widget_class_bind_template_child (widget, TfSlip, frame_page);
   gtk_widget_class_bind_template_child (widget, TfSlip, joins);
+  gtk_widget_class_bind_template_child (widget, TfSlip, page);
   gtk_widget_class_bind_template_child (widget, TfSlip, joins_box);
   gtk_widget_class_bind_template_child (widget, TfSlip, proposal);
   gtk_widget_class_bind_template_child (widget, TfSlip, proposal_box);
