@@ -4,15 +4,9 @@
 #include "tf-bin.h"
 
 #include <math.h>
-#include <stdlib.h>
 #include <gsl/gsl_cdf.h>
 
-static int
-compare_numbers (gconstpointer a, gconstpointer b)
-{
-  double left = *(const double *)a, right = *(const double *)b;
-  return (left > right) - (left < right);
-}
+#include "tf-sort.h"
 
 /* The greatest r with 2 P (B < r) <= 1 - level; 0 when there is none. Sought from where the normal
  * distribution would put it. */
@@ -44,12 +38,12 @@ describe (TfBin *bin, double *values, double level)
   bin->median_ci = bin->scatter_ci = (TfInterval){ NAN, NAN };
   if (bin->n == 0)
     return;
-  qsort (values, bin->n, sizeof *values, compare_numbers);
+  tf_sort_numbers (values, bin->n);
   bin->median = tf_quantile (values, bin->n, 0.5);
   bin->median_ci = tf_median_interval (values, bin->n, level);
   for (guint k = 0; k < bin->n; k++)
     values[k] = 1.4826 * fabs (values[k] - bin->median);
-  qsort (values, bin->n, sizeof *values, compare_numbers);
+  tf_sort_numbers (values, bin->n);
   bin->scatter = bin->n < 3 ? NAN : tf_quantile (values, bin->n, 0.5);
   bin->scatter_ci = tf_median_interval (values, bin->n, level);
 }

@@ -4,7 +4,10 @@
 #include "tf-compare.h"
 
 #include <math.h>
-#include <stdlib.h>
+
+#include "tf-distinct.h"
+#include "tf-joy-slope.h"
+#include "tf-sort.h"
 
 enum
 {
@@ -32,7 +35,7 @@ typedef struct
 static void
 count_regions (const Work *work, const TfGroup *group, guint *regions, guint *breaks)
 {
-  g_autoptr (GHashTable) places = g_hash_table_new (NULL, NULL);
+  g_autoptr (TfDistinct) numbers = tf_distinct_new (tf_sample_get_n (work->sample));
   g_autoptr (GArray) votes = g_array_new (FALSE, TRUE, sizeof (Votes));
   for (guint k = 0; k < tf_sample_get_n (work->sample); k++)
     {
@@ -41,15 +44,13 @@ count_regions (const Work *work, const TfGroup *group, guint *regions, guint *br
       if (verdict->kind == TF_VERDICT_CANNOT_SAY || !tf_group_holds (group, row, verdict, TRUE))
         continue;
       int vote = verdict->kind == TF_VERDICT_BREAKS ? 1 : -1;
-      gpointer key = GUINT_TO_POINTER (row->region), place = NULL;
-      if (!g_hash_table_lookup_extended (places, key, NULL, &place))
+      guint number = tf_distinct_add (numbers, row->region);
+      if (number == votes->len)
         {
-          place = GUINT_TO_POINTER (votes->len);
-          g_hash_table_insert (places, key, place);
-          g_array_set_size (votes, votes->len + 1);
-          g_array_index (votes, Votes, votes->len - 1).first = vote;
+          g_array_set_size (votes, number + 1);
+          g_array_index (votes, Votes, number).first = vote;
         }
-      g_array_index (votes, Votes, GPOINTER_TO_UINT (place)).balance += vote;
+      g_array_index (votes, Votes, number).balance += vote;
     }
   *regions = votes->len;
   *breaks = 0;
@@ -61,13 +62,6 @@ count_regions (const Work *work, const TfGroup *group, guint *regions, guint *br
 }
 
 /* -- slopes ------------------------------------------------------------------------------------- */
-
-static int
-compare_numbers (gconstpointer a, gconstpointer b)
-{
-  double left = *(const double *)a, right = *(const double *)b;
-  return (left > right) - (left < right);
-}
 
 /* The two-sided chance that draws of the difference lie beyond 0; never below one in their number. */
 static double
@@ -92,8 +86,9 @@ compare_slopes (const Work *work, TfComparison *row)
     {
       TfJoyParams params = *work->joy;
       params.seed += side; /* draws apart from each other */
-      TfJoyFit fit = tf_joy_fit_group (work->sample, work->verdicts, &row->groups[side], &params,
-                                       draws[side]);
+      TfJoyFit fit = n == 0 ? tf_joy_slope (work->sample, work->verdicts, &row->groups[side], &params)
+                            : tf_joy_fit_group (work->sample, work->verdicts, &row->groups[side],
+                                                &params, draws[side]);
       row->n_tilts[side] = fit.n;
       row->slope[side] = fit.slope;
     }
@@ -107,7 +102,7 @@ compare_slopes (const Work *work, TfComparison *row)
     }
   if (n == 0 || 2 * good < n || row->n_tilts[0] < MIN_REGIONS || row->n_tilts[1] < MIN_REGIONS)
     return;
-  qsort (draws[0], good, sizeof (double), compare_numbers);
+  tf_sort_numbers (draws[0], good);
   row->difference = (TfInterval){ tf_quantile (draws[0], good, 0.5 * (1.0 - work->joy->level)),
                                   tf_quantile (draws[0], good, 0.5 * (1.0 + work->joy->level)) };
   row->slope_p = chance_beyond (draws[0], good);

@@ -4,11 +4,11 @@
 #include "tf-emergence.h"
 
 #include <math.h>
-#include <stdlib.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
 #include "tf-proportion.h"
+#include "tf-sort.h"
 
 #define O(member) offsetof (TfEmergenceParams, member)
 const TfOption tf_emergence_options[] = {
@@ -55,29 +55,27 @@ typedef struct
   Cell *cells; /* the same, of the passage in hand */
 } Ages;
 
-static int
-compare_rows (gconstpointer a, gconstpointer b, gpointer data)
-{
-  const TfSampleRow *left = tf_sample_get (data, *(const guint *)a),
-                    *right = tf_sample_get (data, *(const guint *)b);
-  if (left->passage != right->passage)
-    return left->passage < right->passage ? -1 : 1;
-  return (left->time.s > right->time.s) - (left->time.s < right->time.s);
-}
-
 /* Rows with a flux, a time and a place on the disk, by passage and time. */
 static GArray *
 order_rows (const TfSample *every)
 {
-  GArray *rows = g_array_new (FALSE, FALSE, sizeof (guint));
-  for (guint k = 0; k < tf_sample_get_n (every); k++)
-    {
-      const TfSampleRow *row = tf_sample_get (every, k);
-      if (row->flux_mx > 0.0 && tf_time_is_known (row->time))
-        g_array_append_val (rows, k);
-    }
-  g_array_sort_with_data (rows, compare_rows, (gpointer)every);
-  return rows;
+  guint n = tf_sample_get_n (every), m = 0;
+  g_autofree double *keys = g_new (double, n + 1);
+  g_autofree guint *rows = g_new (guint, n + 1);
+  for (guint k = 0; k < n; k++)
+    if (tf_sample_get (every, k)->flux_mx > 0.0 && tf_time_is_known (tf_sample_get (every, k)->time))
+      {
+        rows[m] = k;
+        keys[m++] = tf_sample_get (every, k)->time.s;
+      }
+  g_autofree guint *by_time = tf_sort_order (keys, m);
+  for (guint k = 0; k < m; k++)
+    keys[k] = tf_sample_get (every, rows[by_time[k]])->passage;
+  g_autofree guint *by_passage = tf_sort_order (keys, m);
+  GArray *ordered = g_array_sized_new (FALSE, FALSE, sizeof (guint), m);
+  for (guint k = 0; k < m; k++)
+    g_array_append_val (ordered, rows[by_time[by_passage[k]]]);
+  return ordered;
 }
 
 static const TfSampleRow *
@@ -173,18 +171,11 @@ take_passage (const Ages *ages, const guint *rows, guint n, gboolean *late)
   return TRUE;
 }
 
-static int
-compare_numbers (gconstpointer a, gconstpointer b)
-{
-  double left = *(const double *)a, right = *(const double *)b;
-  return (left > right) - (left < right);
-}
-
 static TfSpread
 spread_of (GArray *values)
 {
-  g_array_sort (values, compare_numbers);
-  const double *sorted = (const double *)(const void *)values->data;
+  double *sorted = (double *)(void *)values->data;
+  tf_sort_numbers (sorted, values->len);
   return (TfSpread){ values->len, tf_quantile (sorted, values->len, 0.25),
                      tf_quantile (sorted, values->len, 0.5),
                      tf_quantile (sorted, values->len, 0.75) };

@@ -2,6 +2,7 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 #include "tf-hale-bin.h"
+#include "tf-hale-private.h"
 
 #include <math.h>
 #include <glib/gi18n-lib.h>
@@ -67,35 +68,18 @@ const TfHalePublished tf_hale_published[] = {
   { NULL, NULL, 0, 0, 0.0, 0.0 },
 };
 
-/* The bin's rows as a sample of their own. */
-static TfHaleRow
-row_of (const TfSample *sample, const TfVerdict *verdicts, const TfHaleQuantity *quantity,
-        double from, double to, const TfHaleParams *params)
-{
-  guint n = tf_sample_get_n (sample);
-  g_autoptr (TfSample) part = tf_sample_new ();
-  g_autofree TfVerdict *some = g_new (TfVerdict, n + 1);
-  for (guint k = 0; k < n; k++)
-    {
-      const TfSampleRow *row = tf_sample_get (sample, k);
-      double value = quantity->get (row);
-      if (!(value >= from && value < to))
-        continue;
-      some[tf_sample_get_n (part)] = verdicts[k];
-      tf_sample_add (part, row);
-    }
-  return tf_hale_row (part, some, 0, 0, params);
-}
-
 GArray *
 tf_hale_bins (const TfSample *sample, const TfVerdict *verdicts, const TfHaleQuantity *quantity,
               const TfHaleParams *params, guint *lacking)
 {
   GArray *bins = g_array_new (FALSE, FALSE, sizeof (TfHaleBin));
+  g_autofree double *chances = tf_hale_chances (sample, verdicts);
   for (guint e = 0; e + 1 < quantity->n_edges; e++)
     {
       TfHaleBin bin = { .from = quantity->edges[e], .to = quantity->edges[e + 1] };
-      bin.row = row_of (sample, verdicts, quantity, bin.from, bin.to, params);
+      const TfHalePart part = { sample, verdicts, chances, tf_group_of (0, 0), quantity->get, bin.from,
+                                bin.to };
+      bin.row = tf_hale_row_of (&part, params);
       g_array_append_val (bins, bin);
     }
   if (lacking == NULL)

@@ -1,14 +1,13 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
-#include "tf-hale.h"
+#include "tf-hale-private.h"
 
 #include <math.h>
 #include <gsl/gsl_cdf.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
-#include "tf-group.h"
 
 #define O(member) offsetof (TfHaleParams, member)
 const TfOption tf_hale_options[] = {
@@ -36,44 +35,61 @@ tf_hale_expected_false (const TfSampleRow *row)
   return gsl_cdf_ugaussian_Q (east_west / sigma);
 }
 
-/* The rows that one table row is about. */
-typedef struct
+double *
+tf_hale_chances (const TfSample *sample, const TfVerdict *verdicts)
 {
-  const TfSample *sample;
-  const TfVerdict *verdicts;
-  TfGroup group;
-} Group;
+  guint n = tf_sample_get_n (sample);
+  double *chances = g_new (double, n + 1);
+  for (guint k = 0; k < n; k++)
+    chances[k] = verdicts[k].kind == TF_VERDICT_CANNOT_SAY
+                     ? NAN
+                     : tf_hale_expected_false (tf_sample_get (sample, k));
+  return chances;
+}
 
-/* What the judged rows of a group hold, in order; breaks[k] is 1 or 0. */
+/* What the judged rows hold, in order; breaks[k] is 1 or 0. */
 typedef struct
 {
-  GArray *regions; /* guint32 */
-  GArray *breaks;  /* guint8 */
+  guint32 *regions;
+  guint8 *breaks;
+  guint n;
 } Judged;
 
-/* Counts a group's rows, and gathers those that were judged. */
+static gboolean
+holds (const TfHalePart *part, const TfSampleRow *row, const TfVerdict *verdict)
+{
+  if (!tf_group_holds (&part->group, row, verdict, FALSE))
+    return FALSE;
+  if (part->quantity == NULL)
+    return TRUE;
+  double value = part->quantity (row);
+  return value >= part->from && value < part->to;
+}
+
+/* Counts the part's rows, and gathers those that were judged. */
 static void
-gather (const Group *group, TfHaleRow *row, Judged *judged)
+gather (const TfHalePart *part, TfHaleRow *row, Judged *judged)
 {
   double sum = 0.0;
   guint known = 0;
-  for (guint k = 0; k < tf_sample_get_n (group->sample); k++)
+  for (guint k = 0; k < tf_sample_get_n (part->sample); k++)
     {
-      const TfSampleRow *pick = tf_sample_get (group->sample, k);
-      if (!tf_group_holds (&group->group, pick, &group->verdicts[k], FALSE))
+      const TfSampleRow *pick = tf_sample_get (part->sample, k);
+      const TfVerdict *verdict = &part->verdicts[k];
+      if (!holds (part, pick, verdict))
         continue;
-      if (group->verdicts[k].kind == TF_VERDICT_CANNOT_SAY)
+      if (verdict->kind == TF_VERDICT_CANNOT_SAY)
         {
           row->cannot_say++;
           continue;
         }
-      guint8 breaks = group->verdicts[k].kind == TF_VERDICT_BREAKS;
+      guint8 breaks = verdict->kind == TF_VERDICT_BREAKS;
       row->breaks += breaks;
       row->keeps += 1u - breaks;
-      row->leaning += g_strcmp0 (group->verdicts[k].cycle.reason, "cycle-provisional") == 0;
-      g_array_append_val (judged->breaks, breaks);
-      g_array_append_val (judged->regions, pick->region);
-      double chance = tf_hale_expected_false (pick);
+      row->leaning += g_strcmp0 (verdict->cycle.reason, "cycle-provisional") == 0;
+      judged->breaks[judged->n] = breaks;
+      judged->regions[judged->n++] = pick->region;
+      double chance = part->chances[k];
       if (!isnan (chance))
         {
           sum += chance;
@@ -83,25 +99,25 @@ gather (const Group *group, TfHaleRow *row, Judged *judged)
   row->expected_false = known == 0 ? NAN : sum / known;
 }
 
-static TfHaleRow
-fill_row (const Group *group, const TfHaleParams *params)
+TfHaleRow
+tf_hale_row_of (const TfHalePart *part, const TfHaleParams *params)
 {
-  TfHaleRow row = { .cycle = group->group.cycle, .hemisphere = group->group.hemisphere };
-  g_autoptr (GArray) regions = g_array_new (FALSE, FALSE, sizeof (guint32));
-  g_autoptr (GArray) breaks = g_array_new (FALSE, FALSE, sizeof (guint8));
-  Judged judged = { regions, breaks };
-  gather (group, &row, &judged);
+  guint all = tf_sample_get_n (part->sample);
+  TfHaleRow row = { .cycle = part->group.cycle, .hemisphere = part->group.hemisphere };
+  g_autofree guint32 *regions = g_new (guint32, all + 1);
+  g_autofree guint8 *breaks = g_new (guint8, all + 1);
+  Judged judged = { regions, breaks, 0 };
+  gather (part, &row, &judged);
   row.n = row.keeps + row.breaks;
-  row.regions = tf_count_distinct ((const guint32 *)regions->data, row.n);
+  row.regions = tf_count_distinct (regions, row.n);
   row.share = row.n == 0 ? NAN : (double)row.breaks / row.n;
-  guint all = row.n + row.cannot_say;
-  row.bounds.low = all == 0 ? NAN : (double)row.breaks / all;
-  row.bounds.high = all == 0 ? NAN : (double)(row.breaks + row.cannot_say) / all;
+  guint asked = row.n + row.cannot_say;
+  row.bounds.low = asked == 0 ? NAN : (double)row.breaks / asked;
+  row.bounds.high = asked == 0 ? NAN : (double)(row.breaks + row.cannot_say) / asked;
   row.wilson = tf_wilson (row.breaks, row.n, params->level);
   row.clopper_pearson = tf_clopper_pearson (row.breaks, row.n, params->level);
-  row.cluster
-      = tf_bootstrap_share ((const guint32 *)regions->data, (const guint8 *)breaks->data, row.n,
-                            (guint)MAX (params->draws, 0), (guint64)params->seed, params->level);
+  row.cluster = tf_bootstrap_share (regions, breaks, row.n, (guint)MAX (params->draws, 0),
+                                    (guint64)params->seed, params->level);
   return row;
 }
 
@@ -110,10 +126,14 @@ static GArray *
 list_cycles (const TfSample *sample, const TfVerdict *verdicts)
 {
   GArray *cycles = g_array_new (FALSE, FALSE, sizeof (int));
+  int last = 0; /* as rows come in time their cycles seldom change */
   for (guint k = 0; k < tf_sample_get_n (sample); k++)
     {
       int cycle = verdicts[k].cycle.number;
       guint at = 0;
+      if (cycle == last)
+        continue;
+      last = cycle;
       while (at < cycles->len && g_array_index (cycles, int, at) < cycle)
         at++;
       if (cycle > 0 && (at == cycles->len || g_array_index (cycles, int, at) != cycle))
@@ -128,16 +148,17 @@ tf_hale_table (const TfSample *sample, const TfVerdict *verdicts, const TfHalePa
   static const int hemispheres[] = { 1, -1, 0 };
   GArray *table = g_array_new (FALSE, FALSE, sizeof (TfHaleRow));
   g_autoptr (GArray) cycles = list_cycles (sample, verdicts);
+  g_autofree double *chances = tf_hale_chances (sample, verdicts);
+  TfHalePart part = { .sample = sample, .verdicts = verdicts, .chances = chances };
   for (guint c = 0; c < cycles->len; c++)
     for (guint h = 0; h < G_N_ELEMENTS (hemispheres); h++)
       {
-        Group group
-            = { sample, verdicts, tf_group_of (g_array_index (cycles, int, c), hemispheres[h]) };
-        TfHaleRow row = fill_row (&group, params);
+        part.group = tf_group_of (g_array_index (cycles, int, c), hemispheres[h]);
+        TfHaleRow row = tf_hale_row_of (&part, params);
         g_array_append_val (table, row);
       }
-  Group all = { sample, verdicts, tf_group_of (0, 0) };
-  TfHaleRow row = fill_row (&all, params);
+  part.group = tf_group_of (0, 0);
+  TfHaleRow row = tf_hale_row_of (&part, params);
   g_array_append_val (table, row);
   return table;
 }
@@ -146,6 +167,8 @@ TfHaleRow
 tf_hale_row (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemisphere,
              const TfHaleParams *params)
 {
-  Group group = { sample, verdicts, tf_group_of (cycle, hemisphere) };
-  return fill_row (&group, params);
+  g_autofree double *chances = tf_hale_chances (sample, verdicts);
+  const TfHalePart part = { .sample = sample, .verdicts = verdicts, .chances = chances,
+                            .group = tf_group_of (cycle, hemisphere) };
+  return tf_hale_row_of (&part, params);
 }

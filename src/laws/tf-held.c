@@ -3,27 +3,27 @@
  */
 #include "tf-held.h"
 
+#include "tf-distinct.h"
+
 typedef struct
 {
   guint keeps, breaks;
 } Count;
 
-/* A mark whose source gives no mu is asked. */
-static GHashTable *
-count_marks (const TfSample *marks, const TfVerdict *verdicts)
+/* By number of the passage. A mark whose source gives no mu is asked. */
+static GArray *
+count_marks (const TfSample *marks, const TfVerdict *verdicts, TfDistinct *passages)
 {
-  GHashTable *counts = g_hash_table_new_full (g_direct_hash, g_direct_equal, NULL, g_free);
+  GArray *counts = g_array_new (FALSE, TRUE, sizeof (Count));
   for (guint k = 0; k < tf_sample_get_n (marks); k++)
     {
       const TfSampleRow *row = tf_sample_get (marks, k);
-      Count *count = g_hash_table_lookup (counts, GUINT_TO_POINTER (row->passage));
-      if (count == NULL)
-        {
-          count = g_new0 (Count, 1);
-          g_hash_table_insert (counts, GUINT_TO_POINTER (row->passage), count);
-        }
+      guint number = tf_distinct_add (passages, row->passage);
+      if (number == counts->len)
+        g_array_set_size (counts, number + 1);
       if (row->mu < TF_HELD_MU)
         continue;
+      Count *count = &g_array_index (counts, Count, number);
       count->keeps += verdicts[k].kind == TF_VERDICT_KEEPS;
       count->breaks += verdicts[k].kind == TF_VERDICT_BREAKS;
     }
@@ -35,15 +35,16 @@ tf_held (const TfSample *marks, const TfVerdict *verdicts, const TfSample *picks
          TfVerdict *pick_verdicts)
 {
   g_return_val_if_fail (marks != NULL && picks != NULL, NULL);
-  g_autoptr (GHashTable) counts = count_marks (marks, verdicts);
+  g_autoptr (TfDistinct) passages = tf_distinct_new (tf_sample_get_n (marks));
+  g_autoptr (GArray) counts = count_marks (marks, verdicts, passages);
   TfHeld *held = g_new0 (TfHeld, tf_sample_get_n (picks) + 1);
   for (guint k = 0; k < tf_sample_get_n (picks); k++)
     {
-      const Count *count = g_hash_table_lookup (
-          counts, GUINT_TO_POINTER (tf_sample_get (picks, k)->passage));
+      guint number = tf_distinct_find (passages, tf_sample_get (picks, k)->passage);
       TfVerdict *verdict = &pick_verdicts[k];
-      if (count == NULL)
+      if (number == G_MAXUINT)
         continue;
+      const Count *count = &g_array_index (counts, Count, number);
       held[k].of = count->keeps + count->breaks;
       if (verdict->kind == TF_VERDICT_CANNOT_SAY)
         continue;

@@ -4,10 +4,10 @@
 #include "tf-joy-line-private.h"
 
 #include <math.h>
-#include <stdlib.h>
 #include <string.h>
 
 #include "tf-proportion.h"
+#include "tf-sort.h"
 
 enum
 {
@@ -15,29 +15,21 @@ enum
 };
 #define BIN_DEG 5.0
 
-/* A point on its way into an order: by its first key, then by its second. */
-typedef struct
-{
-  double first, second;
-  guint row;
-} Place;
-
-static int
-compare_places (gconstpointer a, gconstpointer b)
-{
-  const Place *left = a, *right = b;
-  int by_first = (left->first > right->first) - (left->first < right->first);
-  return by_first != 0 ? by_first : (left->second > right->second) - (left->second < right->second);
-}
-
+/* Rows by the first key, those of one by the second. */
 static guint *
-take_order (Place *places, guint n)
+order_by (const double *first, const double *second, const guint *rows, guint n)
 {
-  guint *order = g_new (guint, n + 1);
-  if (n > 0)
-    qsort (places, n, sizeof *places, compare_places);
+  g_autofree double *keys = g_new (double, n + 1);
   for (guint k = 0; k < n; k++)
-    order[k] = places[k].row;
+    keys[k] = second[k];
+  g_autofree guint *by_second = tf_sort_order (keys, n);
+  for (guint k = 0; k < n; k++)
+    keys[k] = first[by_second[k]];
+  guint *order = tf_sort_order (keys, n);
+  for (guint k = 0; k < n; k++)
+    order[k] = by_second[order[k]];
+  for (guint k = 0; rows != NULL && k < n; k++)
+    order[k] = rows[order[k]];
   return order;
 }
 
@@ -46,23 +38,24 @@ tf_joy_points_order (TfJoyPoints *points, gboolean by_ratio)
 {
   if (by_ratio ? points->by_ratio != NULL : points->by_x != NULL)
     return;
-  g_autofree Place *places = g_new (Place, points->n);
-  guint m = 0;
-  for (guint k = 0; by_ratio && k < points->n; k++)
-    if (points->x[k] > 0.0)
-      places[m++] = (Place){ points->y[k] / points->x[k], points->x[k], k };
-  if (by_ratio)
+  if (!by_ratio)
     {
-      points->by_ratio = take_order (places, m);
-      points->n_ratio = m;
+      points->by_x = order_by (points->x, points->y, NULL, points->n);
+      points->by_y = order_by (points->y, points->x, NULL, points->n);
       return;
     }
-  for (guint k = 0; k < points->n; k++)
-    places[k] = (Place){ points->x[k], points->y[k], k };
-  points->by_x = take_order (places, points->n);
-  for (guint k = 0; k < points->n; k++)
-    places[k] = (Place){ points->y[k], points->x[k], k };
-  points->by_y = take_order (places, points->n);
+  guint n = points->n, m = 0;
+  g_autofree double *ratio = g_new (double, n + 1), *x = g_new (double, n + 1);
+  g_autofree guint *rows = g_new (guint, n + 1);
+  for (guint k = 0; k < n; k++)
+    if (points->x[k] > 0.0)
+      {
+        ratio[m] = points->y[k] / points->x[k];
+        x[m] = points->x[k];
+        rows[m++] = k;
+      }
+  points->by_ratio = order_by (ratio, x, rows, m);
+  points->n_ratio = m;
 }
 
 static double
@@ -223,9 +216,86 @@ tf_joy_running_add (TfJoyRunning *median, double value, double weight)
   median->done = !median->met && median->sum > median->half;
 }
 
+/* The ratios of points with their weights, on the way to the weighted median. */
+typedef struct
+{
+  double value, weight;
+} Ratio;
+
+/* Puts values below @pivot before those that are it, and those before the greater: in [low, high). */
+static void
+part_ratios (Ratio *ratios, guint low, guint high, double pivot, guint *first, guint *after)
+{
+  guint at = low;
+  while (at < high)
+    {
+      guint with = ratios[at].value < pivot ? low++ : ratios[at].value > pivot ? --high : at;
+      gboolean above = ratios[at].value > pivot;
+      Ratio swap = ratios[at];
+      ratios[at] = ratios[with];
+      ratios[with] = swap;
+      at += !above;
+    }
+  *first = low;
+  *after = high;
+}
+
+static double
+weight_of (const Ratio *ratios, guint low, guint high)
+{
+  double sum = 0.0;
+  for (guint k = low; k < high; k++)
+    sum += ratios[k].weight;
+  return sum;
+}
+
+/* The value at which half of the weight is passed, without an order of all. NaN where rounding might
+ * decide: then they are put in order. */
+static double
+find_median (Ratio *ratios, guint n)
+{
+  const double doubt = 1e-9;
+  double half = 0.5 * weight_of (ratios, 0, n), before = 0.0;
+  for (guint low = 0, high = n; low < high;)
+    {
+      guint first, after;
+      double pivot = ratios[low + (high - low) / 2].value;
+      part_ratios (ratios, low, high, pivot, &first, &after);
+      double less = before + weight_of (ratios, low, first),
+             upto = less + weight_of (ratios, first, after);
+      if (less > half * (1.0 + doubt))
+        high = first;
+      else if (upto < half * (1.0 - doubt))
+        {
+          low = after;
+          before = upto;
+        }
+      else
+        return less < half * (1.0 - doubt) && upto > half * (1.0 + doubt) ? pivot : NAN;
+    }
+  return NAN;
+}
+
+static double
+median_once (const TfJoyPoints *points)
+{
+  g_autofree Ratio *ratios = g_new (Ratio, points->n + 1);
+  guint n = 0;
+  for (guint k = 0; k < points->n; k++)
+    if (points->x[k] > 0.0)
+      ratios[n++] = (Ratio){ points->y[k] / points->x[k], points->x[k] };
+  return find_median (ratios, n);
+}
+
 TfJoyLine
 tf_joy_line_robust (TfJoyPoints *points)
 {
+  if (!points->drawn && points->by_ratio == NULL)
+    {
+      double once = median_once (points);
+      if (!isnan (once))
+        return (TfJoyLine){ once, NAN };
+    }
   tf_joy_points_order (points, TRUE);
   double total = 0.0;
   for (guint k = 0; k < points->n; k++)

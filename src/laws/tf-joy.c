@@ -9,6 +9,7 @@
 #include "tf-circular.h"
 #include "tf-constants.h"
 #include "tf-joy-line.h"
+#include "tf-joy-slope.h"
 
 const char *const tf_joy_form_names[] = { "linear", "linear-free", "sine", "sine-of-tilt", NULL };
 const char *const tf_joy_estimator_names[]
@@ -238,8 +239,9 @@ fit_intervals (const Columns *c, const TfJoyParams *params, TfJoyPoints *points,
                                                params->level, recall_intercept, &draws);
 }
 
-static void
-fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit, double *draws)
+/* The points, and the line through them. */
+static TfJoyPoints *
+draw_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit)
 {
   const Form *form = &forms[params->form];
   g_autofree double *x = g_new (double, c->n), *y = g_new (double, c->n);
@@ -252,11 +254,31 @@ fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit, double *dr
   TfJoyLine line = fits[params->form][params->estimator](points);
   fit->slope = line.slope;
   fit->intercept = line.intercept;
+  return points;
+}
+
+static void
+fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit, double *draws)
+{
+  TfJoyPoints *points = draw_line (c, params, fit);
+  g_autofree double *y = g_new (double, c->n);
   for (guint k = 0; k < c->n; k++)
     y[k] = c->tilt[k] - tf_joy_tilt (fit, (TfJoyForm)params->form, c->lat[k]);
   fit->scatter_deg = robust_scatter (y, c->n);
   fit_intervals (c, params, points, fit, draws);
   tf_joy_points_free (points);
+}
+
+TfJoyFit
+tf_joy_slope (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
+              const TfJoyParams *params)
+{
+  g_auto (Columns) c = gather (sample, verdicts, group, params);
+  TfJoyFit fit = { .cycle = group->cycle, .hemisphere = group->hemisphere, .n = c.n,
+                   .leaning = c.leaning, .no_polarity = c.no_polarity, .slope = NAN, .intercept = NAN };
+  if (c.n >= MIN_ROWS && tf_joy_offers (params->form, params->estimator))
+    tf_joy_points_free (draw_line (&c, params, &fit));
+  return fit;
 }
 
 TfJoyFit

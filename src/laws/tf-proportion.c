@@ -8,6 +8,9 @@
 #include <gsl/gsl_cdf.h>
 #include <gsl/gsl_rng.h>
 
+#include "tf-distinct.h"
+#include "tf-sort.h"
+
 #define NO_INTERVAL ((TfInterval){ NAN, NAN })
 
 static gboolean
@@ -243,20 +246,15 @@ typedef struct
 static Clusters
 clusters_new (const guint32 *cluster, guint n)
 {
-  g_autoptr (GHashTable) numbers = g_hash_table_new (NULL, NULL);
+  g_autoptr (TfDistinct) numbers = tf_distinct_new (n);
   g_autofree guint *of_row = g_new (guint, n);
   Clusters result = { 0, g_new0 (guint, n + 2), g_new (guint, n) };
   for (guint k = 0; k < n; k++)
     {
-      gpointer id = GUINT_TO_POINTER (cluster[k]), known = NULL;
-      if (!g_hash_table_lookup_extended (numbers, id, NULL, &known))
-        {
-          known = GUINT_TO_POINTER (result.n++);
-          g_hash_table_insert (numbers, id, known);
-        }
-      of_row[k] = GPOINTER_TO_UINT (known);
+      of_row[k] = tf_distinct_add (numbers, cluster[k]);
       result.start[of_row[k] + 2]++;
     }
+  result.n = tf_distinct_get_n (numbers);
   for (guint c = 2; c <= result.n; c++)
     result.start[c] += result.start[c - 1];
   for (guint k = 0; k < n; k++)
@@ -289,7 +287,7 @@ percentiles (double *values, guint n, guint draws, double level)
 {
   if (2 * n < draws)
     return NO_INTERVAL;
-  qsort (values, n, sizeof *values, compare_numbers);
+  tf_sort_numbers (values, n);
   return (TfInterval){ tf_quantile (values, n, 0.5 * (1.0 - level)),
                        tf_quantile (values, n, 0.5 * (1.0 + level)) };
 }

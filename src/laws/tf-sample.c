@@ -9,7 +9,9 @@
 
 struct _TfSample
 {
-  GArray *rows;
+  GArray *rows;          /* TfSampleRow; of a part: guint, places in the whole */
+  const TfSample *whole; /* NULL: it is no part */
+  TfSample *taken;       /* the whole, when it goes with this */
 };
 
 TfSample *
@@ -32,7 +34,32 @@ tf_sample_free (TfSample *sample)
   if (sample == NULL)
     return;
   g_array_unref (sample->rows);
+  tf_sample_free (sample->taken);
   g_free (sample);
+}
+
+TfSample *
+tf_sample_new_part (const TfSample *whole)
+{
+  g_return_val_if_fail (whole != NULL, NULL);
+  TfSample *part = g_new0 (TfSample, 1);
+  part->rows = g_array_sized_new (FALSE, FALSE, sizeof (guint), whole->rows->len);
+  part->whole = whole;
+  return part;
+}
+
+void
+tf_sample_take_whole (TfSample *part, TfSample *whole)
+{
+  g_return_if_fail (part->whole == whole && part->taken == NULL);
+  part->taken = whole;
+}
+
+void
+tf_sample_add_place (TfSample *part, guint place)
+{
+  g_return_if_fail (part->whole != NULL && place < part->whole->rows->len);
+  g_array_append_val (part->rows, place);
 }
 
 void
@@ -69,13 +96,14 @@ tf_sample_row_init (TfSampleRow *row)
 void
 tf_sample_add (TfSample *sample, const TfSampleRow *row)
 {
+  g_return_if_fail (sample->whole == NULL);
   g_array_append_vals (sample->rows, row, 1);
 }
 
 void
 tf_sample_scale_flux (TfSample *sample, guint k, double factor)
 {
-  g_return_if_fail (k < sample->rows->len);
+  g_return_if_fail (k < sample->rows->len && sample->whole == NULL);
   g_array_index (sample->rows, TfSampleRow, k).flux_mx *= factor;
 }
 
@@ -89,6 +117,8 @@ const TfSampleRow *
 tf_sample_get (const TfSample *sample, guint k)
 {
   g_return_val_if_fail (k < sample->rows->len, NULL);
+  if (sample->whole != NULL)
+    return tf_sample_get (sample->whole, g_array_index (sample->rows, guint, k));
   return &g_array_index (sample->rows, TfSampleRow, k);
 }
 

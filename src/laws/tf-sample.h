@@ -59,8 +59,16 @@ TfSample *tf_sample_new (void);
 /** tf_sample_new_sized: with room for @n rows. */
 TfSample *tf_sample_new_sized (guint n);
 void tf_sample_free (TfSample *sample);
+/** tf_sample_new_part: some rows of another, by their places there: none at first. @whole: must live as
+ * long, and is not to change. */
+TfSample *tf_sample_new_part (const TfSample *whole);
+/** tf_sample_take_whole: a part frees its whole with itself from now on. */
+void tf_sample_take_whole (TfSample *part, TfSample *whole);
+/** tf_sample_add_place: to a part: the row at that place of the whole. */
+void tf_sample_add_place (TfSample *part, guint place);
 /** tf_sample_row_init: every quantity "absent". */
 void tf_sample_row_init (TfSampleRow *row);
+/** tf_sample_add: not to a part. */
 void tf_sample_add (TfSample *sample, const TfSampleRow *row);
 /** tf_sample_scale_flux: while it is being filled. */
 void tf_sample_scale_flux (TfSample *sample, guint k, double factor);

@@ -7,6 +7,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
+#include "tf-distinct.h"
 
 const char *const tf_sampling_names[]
     = { "greatest-flux", "central-meridian", "mean", "every-mark", NULL };
@@ -165,18 +166,14 @@ static GArray *
 gather (const TfSample *marks, const TfSamplingParams *params)
 {
   GArray *passages = g_array_new (FALSE, TRUE, sizeof (Passage));
-  g_autoptr (GHashTable) places = g_hash_table_new (NULL, NULL);
+  g_autoptr (TfDistinct) numbers = tf_distinct_new (tf_sample_get_n (marks));
   for (guint k = 0; k < tf_sample_get_n (marks); k++)
     {
       const TfSampleRow *row = tf_sample_get (marks, k);
-      gpointer key = GUINT_TO_POINTER (row->passage), place = NULL;
-      if (!g_hash_table_lookup_extended (places, key, NULL, &place))
-        {
-          place = GUINT_TO_POINTER (passages->len);
-          g_hash_table_insert (places, key, place);
-          g_array_set_size (passages, passages->len + 1);
-        }
-      take_mark (&g_array_index (passages, Passage, GPOINTER_TO_UINT (place)), row, params);
+      guint number = tf_distinct_add (numbers, row->passage);
+      if (number == passages->len)
+        g_array_set_size (passages, number + 1);
+      take_mark (&g_array_index (passages, Passage, number), row, params);
     }
   return passages;
 }
@@ -201,15 +198,16 @@ TfSample *
 tf_sampling_pick (const TfSample *marks, const TfSamplingParams *params, TfSamplingTally *tally)
 {
   TfSamplingTally own = { 0 };
-  TfSample *picks = tf_sample_new ();
   g_autoptr (GArray) passages = gather (marks, params);
+  gboolean every = params->rule == TF_SAMPLING_EVERY;
+  TfSample *picks = tf_sample_new_sized (every ? tf_sample_get_n (marks) : passages->len);
   own.passages = passages->len;
-  for (guint k = 0; params->rule == TF_SAMPLING_EVERY && k < tf_sample_get_n (marks); k++)
+  for (guint k = 0; every && k < tf_sample_get_n (marks); k++)
     tf_sample_add (picks, tf_sample_get (marks, k));
   for (guint p = 0; p < passages->len; p++)
     {
       Passage *passage = &g_array_index (passages, Passage, p);
-      if (params->rule != TF_SAMPLING_EVERY)
+      if (!every)
         pick (passage, params, picks, &own);
       g_free (passage->sums);
     }

@@ -91,7 +91,8 @@ TfVerdict *tf_study_judge (const TfStudy *study, const TfSample *sample, double 
 /** tf_study_hold: cannot say where the passage changes. That is told once, under the study as
  * chosen: another cycle turns all marks of a passage alike. */
 void tf_study_hold (const TfFindings *findings, const TfSample *sample, TfVerdict *verdicts);
-/** tf_study_marks: (transfer full): the rows that pass the mark conditions. @findings: (nullable):
+/** tf_study_marks: (transfer full): the rows that pass the mark conditions, a part of rows->all, which
+ * must live as long. @findings: (nullable):
  * counts what is left out by reason. */
 TfSample *tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings);
 /** tf_study_picks: (transfer full): one pick a passage of @marks, by the sampling rule, as far as it

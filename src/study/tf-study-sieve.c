@@ -122,7 +122,7 @@ ask_more (const GPtrArray *more, const TfStudy *study, const TfDivides *divides,
 TfSample *
 tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings)
 {
-  TfSample *marks = tf_sample_new_sized (tf_sample_get_n (rows->all));
+  TfSample *marks = tf_sample_new_part (rows->all);
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   for (guint k = 0; k < tf_sample_get_n (rows->all); k++)
     {
@@ -136,7 +136,7 @@ tf_study_marks (const TfStudy *study, const TfStudyRows *rows, TfFindings *findi
       if (reason == NULL)
         reason = ask_more (study->mark_conditions, study, divides, rows, s, findings);
       if (settle (reason, conditions, MARK_CONDITIONS, findings))
-        tf_sample_add (marks, s);
+        tf_sample_add_place (marks, k);
     }
   return marks;
 }
@@ -146,9 +146,9 @@ tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *m
                 TfFindings *findings)
 {
   TfSamplingTally tally;
-  TfSample *picks = tf_sample_new ();
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
-  g_autoptr (TfSample) found = tf_sampling_pick (marks, &study->sampling, &tally);
+  TfSample *found = tf_sampling_pick (marks, &study->sampling, &tally), *picks = tf_sample_new_part (found);
+  tf_sample_take_whole (picks, found);
   tally.not_bracketed = 0;
   for (guint k = 0; k < tf_sample_get_n (found); k++)
     {
@@ -161,7 +161,7 @@ tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *m
       if (!settle (reason, conditions, REGION_CONDITIONS, findings))
         continue;
       tally.not_bracketed += s->bracketed == 0;
-      tf_sample_add (picks, s);
+      tf_sample_add_place (picks, k);
     }
   if (findings != NULL)
     {

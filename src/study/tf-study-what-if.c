@@ -7,6 +7,7 @@
 
 #include "tf-bands.h"
 #include "tf-constants.h"
+#include "tf-joy-slope.h"
 #include "tf-study-private.h"
 
 /* What the results would be under another choice: each alone, all else as chosen. A choice changes a
@@ -447,27 +448,27 @@ count_verdicts (TfWhatIf *row, const TfSample *sample, const TfVerdict *verdicts
 static void
 fill_row (TfWhatIf *row, const Variant *v, const TfSample *sample, const TfVerdict *verdicts)
 {
-  TfJoyParams joy = v->study.joy;
-  joy.draws = 0; /* the interval is not shown here */
-  TfJoyFit fit = tf_joy_fit (sample, verdicts, 0, 0, &joy);
+  const TfGroup all = tf_group_of (0, 0);
+  TfJoyFit fit = tf_joy_slope (sample, verdicts, &all, &v->study.joy);
   row->slope = fit.slope;
   row->n_tilts = fit.n;
   count_verdicts (row, sample, verdicts);
+}
+
+static gboolean
+is_kept (const Variant *v, const TfSampleRow *row)
+{
+  return !(v->bracketed && row->bracketed == 0) && !(v->marks_alone && row->origin == TF_ORIGIN_HINT);
 }
 
 /* The rows of @sample that the variant keeps, where its options cannot say so. */
 static TfSample *
 keep (const Variant *v, const TfSample *sample)
 {
-  TfSample *part = tf_sample_new ();
+  TfSample *part = tf_sample_new_part (sample);
   for (guint k = 0; k < tf_sample_get_n (sample); k++)
-    {
-      const TfSampleRow *row = tf_sample_get (sample, k);
-      if ((v->bracketed && row->bracketed == 0)
-          || (v->marks_alone && row->origin == TF_ORIGIN_HINT))
-        continue;
-      tf_sample_add (part, row);
-    }
+    if (is_kept (v, tf_sample_get (sample, k)))
+      tf_sample_add_place (part, k);
   return part;
 }
 
@@ -481,11 +482,10 @@ fill_from (TfWhatIf *row, const Variant *v, From from, const TfStudyRows *rows,
       return;
     }
   g_autoptr (TfSample) marks = from >= FROM_MARKS ? tf_study_marks (&v->study, rows, NULL) : NULL;
-  g_autoptr (TfSample) some = marks != NULL ? keep (v, marks) : NULL;
+  g_autoptr (TfSample) some = marks != NULL && v->marks_alone ? keep (v, marks) : NULL;
+  const TfSample *every = some != NULL ? some : marks != NULL ? marks : findings->every;
   g_autoptr (TfSample) picks
-      = from >= FROM_PICKS
-            ? tf_study_picks (&v->study, rows, some != NULL ? some : findings->every, NULL)
-            : NULL;
+      = from >= FROM_PICKS ? tf_study_picks (&v->study, rows, every, NULL) : NULL;
   g_autoptr (TfSample) part = v->bracketed ? keep (v, picks) : NULL;
   const TfSample *sample = part != NULL ? part : picks != NULL ? picks : findings->sample;
   g_autofree TfVerdict *verdicts = tf_study_judge (&v->study, sample, v->later_s);
@@ -553,8 +553,10 @@ static void
 fill_scaled (TfWhatIf *row, const Variant *v, const Context *context)
 {
   const TfStudyRows *own = context->rows;
-  g_autoptr (TfSample) all = tf_sample_new ();
-  for (guint k = 0; k < tf_sample_get_n (own->all); k++)
+  gboolean any = own->scales != NULL && own->scales->len > 0;
+  guint n = any ? tf_sample_get_n (own->all) : 0;
+  g_autoptr (TfSample) all = tf_sample_new_sized (n);
+  for (guint k = 0; k < n; k++)
     tf_sample_add (all, tf_sample_get (own->all, k));
   if (tf_study_scale (all, own, v->study.sieve.with_scales) > 0)
     {

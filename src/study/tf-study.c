@@ -82,6 +82,7 @@ tf_findings_free (TfFindings *findings)
     return;
   g_clear_pointer (&findings->sample, tf_sample_free);
   g_clear_pointer (&findings->every, tf_sample_free);
+  tf_study_taken_unref (findings->taken);
   g_free (findings->verdicts);
   g_free (findings->held);
   g_clear_pointer (&findings->changing, g_hash_table_unref);
@@ -113,9 +114,15 @@ tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s)
   TfVerdict *verdicts = g_new0 (TfVerdict, n + 1);
   for (guint k = 0; k < n; k++)
     {
-      TfSampleRow row = *tf_sample_get (sample, k);
-      row.time = tf_time_add (row.time, -later_s);
-      verdicts[k] = tf_verdict_judge (&row, divides, &study->verdict);
+      const TfSampleRow *row = tf_sample_get (sample, k);
+      if (fabs (later_s) > 0.0)
+        {
+          TfSampleRow earlier = *row;
+          earlier.time = tf_time_add (row->time, -later_s);
+          verdicts[k] = tf_verdict_judge (&earlier, divides, &study->verdict);
+        }
+      else
+        verdicts[k] = tf_verdict_judge (row, divides, &study->verdict);
     }
   return verdicts;
 }
@@ -263,6 +270,22 @@ bin_tilts (TfFindings *findings, const TfStudy *study)
   findings->scatter_bins = tf_bins (separation, rest, n, 0.0, 20.0, 1.0, study->joy.level);
 }
 
+/* What the findings are parts of lives as long as they; where nobody can keep it they have a copy. */
+static void
+keep_every (TfFindings *findings, const TfStudyRows *rows)
+{
+  if (rows->taken != NULL)
+    {
+      findings->taken = tf_study_taken_ref ((TfStudyTaken *)rows->taken);
+      return;
+    }
+  TfSample *own = tf_sample_new_sized (tf_sample_get_n (findings->every));
+  for (guint k = 0; k < tf_sample_get_n (findings->every); k++)
+    tf_sample_add (own, tf_sample_get (findings->every, k));
+  tf_sample_free (findings->every);
+  findings->every = own;
+}
+
 TfFindings *
 tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger, double floor,
                    gboolean what_if)
@@ -284,6 +307,7 @@ tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledg
   findings->dipoles = tf_dipole_sums (findings->sample, findings->verdicts);
   findings->emergence = tf_emergence_new (findings->every, &study->emergence);
   average_tilts (findings);
+  keep_every (findings, rows);
   tf_study_add_cautions (findings, study, rows);
   return findings;
 }

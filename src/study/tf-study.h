@@ -128,6 +128,7 @@ typedef struct
   TfHeld *held;        /* likewise: how far the pick's passage holds to its verdict; NULL when every mark is a pick */
   GHashTable *changing; /* passages in which too few marks agree */
   TfSample *every;     /* every mark that passes the mark conditions, picked or not */
+  struct _TfStudyTaken *taken; /* what @every is a part of; NULL: it is of its own */
   TfSamplingTally sampling;
   gint64 *marks;          /* local key of each pick's mark; hints negative, outside rows 0 */
   guint n_marks, n_hints, n_outside; /* of the passages that were picked */

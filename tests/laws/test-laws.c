@@ -71,6 +71,7 @@ main (int argc, char **argv)
   test_laws_add_hale ();
   test_laws_add_held ();
   test_laws_add_joy ();
+  test_laws_add_sort ();
   test_laws_add_tally ();
   test_laws_add_emergence ();
   test_laws_add_line ();

@@ -18,6 +18,7 @@ void test_laws_add_joy (void);
 void test_laws_add_line (void);
 void test_laws_add_proportion (void);
 void test_laws_add_sampling (void);
+void test_laws_add_sort (void);
 void test_laws_add_tally (void);
 void test_laws_add_verdict (void);
 

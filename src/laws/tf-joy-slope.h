@@ -1,0 +1,17 @@
+/* SPDX-License-Identifier: GPL-3.0-or-later
+ * SPDX-FileCopyrightText: The Tiltfield developers
+ */
+#pragma once
+
+/* The slope of Joy's law alone: what other choices and comparisons ask again and again. */
+
+#include "tf-joy.h"
+
+G_BEGIN_DECLS
+
+/** tf_joy_slope: n, no_polarity, slope and intercept as tf_joy_fit_group() gives them; no interval, no
+ * scatter, no means, no count of regions. */
+TfJoyFit tf_joy_slope (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
+                       const TfJoyParams *params);
+
+G_END_DECLS
