@@ -27,6 +27,7 @@ typedef struct
   TfLawsAnswer *quick; /* of this question; NULL: not answered yet */
   TfLawsAnswer *before; /* of a moving one: the last full answer, from which it moves; NULL */
   Live *live;           /* the work's own */
+  TfCancel *stop;       /* of its draws: raised when a newer question comes; NULL */
 } Question;
 
 struct _TfLawsWork
@@ -37,6 +38,7 @@ struct _TfLawsWork
   gpointer data;
   Question *waiting; /* the newest that is not begun */
   gboolean reading, drawing;
+  TfCancel *stop; /* of the draws in hand; NULL */
   guint serial; /* of the newest question */
   guint age;    /* rises when the ledger changes */
   TfStudyTaken *rows;
@@ -55,6 +57,7 @@ question_free (gpointer data)
   tf_study_taken_unref (question->rows);
   tf_laws_answer_unref (question->quick);
   tf_laws_answer_unref (question->before);
+  g_clear_pointer (&question->stop, tf_cancel_unref);
   g_free (question);
 }
 
@@ -102,7 +105,12 @@ work_out (const Question *question, TfFindingsDepth depth, TfLedger *ledger)
   TfLawsAnswer *answer = answer_new (question, depth);
   answer->findings
       = tf_study_again (question->rows, question->study, &question->ask.stretch, depth, ledger,
-                        question->quick != NULL ? question->quick->findings : NULL);
+                        question->quick != NULL ? question->quick->findings : NULL, question->stop);
+  if (answer->findings == NULL)
+    {
+      tf_laws_answer_unref (answer);
+      return NULL;
+    }
   g_autoptr (TfDivides) computed = tf_divides_new (&question->study->divide);
   TfLawsFacts facts = { .sample = answer->findings->sample,
                         .verdicts = answer->findings->verdicts,
@@ -206,6 +214,10 @@ draw_next (TfLawsWork *work)
   g_task_set_return_on_cancel (task, FALSE);
   g_task_set_task_data (task, g_steal_pointer (&work->to_draw), question_free);
   work->drawing = TRUE;
+  Question *question = g_task_get_task_data (task);
+  g_clear_pointer (&work->stop, tf_cancel_unref);
+  work->stop = tf_cancel_new ();
+  question->stop = tf_cancel_ref (work->stop);
   g_task_run_in_thread (task, draw);
 }
 
@@ -234,6 +246,7 @@ question_copy (const Question *question)
   copy->rows = question->rows != NULL ? tf_study_taken_ref (question->rows) : NULL;
   copy->quick = NULL;
   copy->before = NULL;
+  copy->stop = NULL;
   return copy;
 }
 
@@ -345,6 +358,15 @@ begin_next (TfLawsWork *work)
                 begun, work);
 }
 
+/* What would be overtaken need not be drawn to its end. */
+static void
+stop_drawing (TfLawsWork *work)
+{
+  if (work->stop != NULL)
+    tf_cancel_raise (work->stop);
+  g_clear_pointer (&work->stop, tf_cancel_unref);
+}
+
 /* -- the work -------------------------------------------------------------------------------- */
 
 TfLawsWork *
@@ -365,6 +387,7 @@ tf_laws_work_free (TfLawsWork *work)
   if (work == NULL)
     return;
   g_cancellable_cancel (work->cancellable);
+  stop_drawing (work);
   tf_lane_close (work->lane);
   g_clear_object (&work->cancellable);
   question_free (work->waiting);
@@ -380,6 +403,7 @@ tf_laws_work_ask (TfLawsWork *work, const TfStudy *study, const TfLawsAsk *ask)
 {
   g_return_if_fail (work != NULL && study != NULL && ask != NULL);
   question_free (work->waiting);
+  stop_drawing (work);
   work->waiting = g_new0 (Question, 1);
   work->waiting->serial = ++work->serial;
   work->waiting->age = work->age;

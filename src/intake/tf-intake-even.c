@@ -9,6 +9,8 @@
 
 #include <string.h>
 
+#include "tf-ledger-brief.h"
+
 typedef struct
 {
   GArray *frames, *measures;     /* of gint64, TfMeasure */
@@ -98,11 +100,24 @@ compare_frames (gconstpointer a, gconstpointer b)
   return (p->frame > q->frame) - (p->frame < q->frame);
 }
 
+/* Whether every mark (and open hint) of the ledger has that floor: told without reading the outlines. */
+static gboolean
+is_measured (TfLedger *ledger, double floor_gauss, const TfRowQuery *query)
+{
+  if (query->frame != 0 || query->passage != 0 || query->judged_hints || !query->marks
+      || !tf_ledger_has_briefs (ledger))
+    return FALSE;
+  const TfBriefQuery asked = { .hints = query->hints, .asked_gauss = { floor_gauss, 0.0 } };
+  g_autoptr (TfBriefs) briefs = tf_ledger_briefs (ledger, &asked, NULL);
+  return briefs != NULL && briefs->n_lacking[0] == 0;
+}
+
 gboolean
 tf_intake_measure_even (TfLedger *ledger, double floor_gauss, const TfRowQuery *query, const TfWork *work, GError **error)
 {
   g_return_val_if_fail (ledger != NULL && query != NULL, FALSE);
-  if (!(floor_gauss > 0) || tf_ledger_get_read_only (ledger) != NULL)
+  if (!(floor_gauss > 0) || tf_ledger_get_read_only (ledger) != NULL
+      || is_measured (ledger, floor_gauss, query))
     return TRUE;
   g_autoptr (GPtrArray) rows = tf_ledger_rows (ledger, query, error);
   if (rows == NULL)

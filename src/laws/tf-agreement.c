@@ -144,7 +144,7 @@ tf_cohen_interval (const int *first, const int *second, guint n, guint kinds, gu
 {
   Pair pair = { first, second, MIN (kinds, TF_AGREEMENT_KINDS) };
   g_autofree guint32 *cases = number_cases (n);
-  return tf_bootstrap_clusters (cases, n, draws, seed, level, draw_kappa, &pair);
+  return tf_bootstrap_clusters (cases, n, draws, seed, level, NULL, draw_kappa, &pair);
 }
 
 /* -- the same number of people on every case ---------------------------------------------------- */
@@ -340,7 +340,7 @@ tf_krippendorff_interval (const double *values, guint people, guint n, TfAgreeme
   Ratings ratings = { values, people, n, scale, 0, NULL };
   list_kinds (&ratings);
   g_autofree guint32 *cases = number_cases (n);
-  TfInterval interval = tf_bootstrap_clusters (cases, n, draws, seed, level, draw_alpha, &ratings);
+  TfInterval interval = tf_bootstrap_clusters (cases, n, draws, seed, level, NULL, draw_alpha, &ratings);
   g_free (ratings.kinds);
   return interval;
 }

@@ -238,7 +238,8 @@ drift_of (const TfSample *sample, const TfVerdict *verdicts, int cycle, int hemi
     return drift;
   drift.slope_deg_per_year = slope_of (NULL, c.n, &c);
   drift.slope_ci = tf_bootstrap_clusters (c.regions, c.n, (guint)MAX (params->draws, 0),
-                                          (guint64)params->seed, params->level, slope_of, &c);
+                                          (guint64)params->seed, params->level, params->cancel,
+                                          slope_of, &c);
   fit_exponential (&c, &drift);
   return drift;
 }

@@ -13,6 +13,7 @@
  * in the years but not in the curves.
  */
 
+#include "tf-bands.h"
 #include "tf-group.h"
 #include "tf-proportion.h"
 
@@ -24,6 +25,7 @@ typedef struct
   int draws;    /* 1000 */
   int seed;
   int from_months, before_end_months; /* 18, 24: the curves leave out what lies outside */
+  const TfCancel *cancel; /* as in TfJoyParams */
 } TfDriftParams;
 extern const TfOption tf_drift_options[];
 

@@ -117,7 +117,7 @@ tf_hale_row_of (const TfHalePart *part, const TfHaleParams *params)
   row.wilson = tf_wilson (row.breaks, row.n, params->level);
   row.clopper_pearson = tf_clopper_pearson (row.breaks, row.n, params->level);
   row.cluster = tf_bootstrap_share (regions, breaks, row.n, (guint)MAX (params->draws, 0),
-                                    (guint64)params->seed, params->level);
+                                    (guint64)params->seed, params->level, params->cancel);
   return row;
 }
 

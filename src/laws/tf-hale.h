@@ -9,6 +9,7 @@
 
 #include <glib.h>
 
+#include "tf-bands.h"
 #include "tf-proportion.h"
 #include "tf-verdict.h"
 
@@ -19,6 +20,7 @@ typedef struct
   double level; /* 0.95 */
   int draws;    /* 1000 */
   int seed;
+  const TfCancel *cancel; /* as in TfJoyParams */
 } TfHaleParams;
 extern const TfOption tf_hale_options[];
 

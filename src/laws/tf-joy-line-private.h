@@ -27,6 +27,15 @@ struct _TfJoyPoints
 /** tf_joy_points_order: makes by_ratio, or by_x and by_y, if they are not there yet. */
 void tf_joy_points_order (TfJoyPoints *points, gboolean by_ratio);
 
+/** TfJoyRatio: y / x of a point with x > 0, and its weight x. */
+typedef struct
+{
+  double value, weight;
+} TfJoyRatio;
+/** tf_joy_ratio_median: the value at which half of the weight is passed, without an order of all; NaN
+ * where rounding might decide, or there is none. @ratios are put into another order. */
+double tf_joy_ratio_median (TfJoyRatio *ratios, guint n);
+
 /** TfJoyRunning: a weighted median as values come in order: the first at which half of the weight
  * is passed, midway to the next when it is met within rounding. Begin with half and value NaN set.
  */

@@ -216,22 +216,16 @@ tf_joy_running_add (TfJoyRunning *median, double value, double weight)
   median->done = !median->met && median->sum > median->half;
 }
 
-/* The ratios of points with their weights, on the way to the weighted median. */
-typedef struct
-{
-  double value, weight;
-} Ratio;
-
 /* Puts values below @pivot before those that are it, and those before the greater: in [low, high). */
 static void
-part_ratios (Ratio *ratios, guint low, guint high, double pivot, guint *first, guint *after)
+part_ratios (TfJoyRatio *ratios, guint low, guint high, double pivot, guint *first, guint *after)
 {
   guint at = low;
   while (at < high)
     {
       guint with = ratios[at].value < pivot ? low++ : ratios[at].value > pivot ? --high : at;
       gboolean above = ratios[at].value > pivot;
-      Ratio swap = ratios[at];
+      TfJoyRatio swap = ratios[at];
       ratios[at] = ratios[with];
       ratios[with] = swap;
       at += !above;
@@ -241,7 +235,7 @@ part_ratios (Ratio *ratios, guint low, guint high, double pivot, guint *first, g
 }
 
 static double
-weight_of (const Ratio *ratios, guint low, guint high)
+weight_of (const TfJoyRatio *ratios, guint low, guint high)
 {
   double sum = 0.0;
   for (guint k = low; k < high; k++)
@@ -249,10 +243,8 @@ weight_of (const Ratio *ratios, guint low, guint high)
   return sum;
 }
 
-/* The value at which half of the weight is passed, without an order of all. NaN where rounding might
- * decide: then they are put in order. */
-static double
-find_median (Ratio *ratios, guint n)
+double
+tf_joy_ratio_median (TfJoyRatio *ratios, guint n)
 {
   const double doubt = 1e-9;
   double half = 0.5 * weight_of (ratios, 0, n), before = 0.0;
@@ -279,12 +271,12 @@ find_median (Ratio *ratios, guint n)
 static double
 median_once (const TfJoyPoints *points)
 {
-  g_autofree Ratio *ratios = g_new (Ratio, points->n + 1);
+  g_autofree TfJoyRatio *ratios = g_new (TfJoyRatio, points->n + 1);
   guint n = 0;
   for (guint k = 0; k < points->n; k++)
     if (points->x[k] > 0.0)
-      ratios[n++] = (Ratio){ points->y[k] / points->x[k], points->x[k] };
-  return find_median (ratios, n);
+      ratios[n++] = (TfJoyRatio){ points->y[k] / points->x[k], points->x[k] };
+  return tf_joy_ratio_median (ratios, n);
 }
 
 TfJoyLine

@@ -8,7 +8,7 @@
 
 #include "tf-circular.h"
 #include "tf-constants.h"
-#include "tf-joy-line.h"
+#include "tf-joy-line-private.h"
 #include "tf-joy-slope.h"
 
 const char *const tf_joy_form_names[] = { "linear", "linear-free", "sine", "sine-of-tilt", NULL };
@@ -232,11 +232,12 @@ fit_intervals (const Columns *c, const TfJoyParams *params, TfJoyPoints *points,
   if (isnan (fit->slope))
     return;
   fit->slope_ci = tf_bootstrap_clusters (c->region, c->n, n, (guint64)params->seed, params->level,
-                                         draw_slope, &draws);
+                                         params->cancel, draw_slope, &draws);
   draws.at = 0;
   if (!isnan (fit->intercept))
     fit->intercept_ci = tf_bootstrap_clusters (c->region, c->n, n, (guint64)params->seed,
-                                               params->level, recall_intercept, &draws);
+                                               params->level, params->cancel, recall_intercept,
+                                               &draws);
 }
 
 /* The points, and the line through them. */
@@ -269,13 +270,43 @@ fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit, double *dr
   tf_joy_points_free (points);
 }
 
+/* The robust slope through the origin straight from the rows. NaN: it takes more. */
+static double
+find_slope (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
+            const TfJoyParams *params, TfJoyFit *fit)
+{
+  const Form *form = &forms[params->form];
+  guint n = 0;
+  g_autofree TfJoyRatio *ratios = g_new (TfJoyRatio, tf_sample_get_n (sample) + 1);
+  for (guint k = 0; k < tf_sample_get_n (sample); k++)
+    {
+      const TfSampleRow *row = tf_sample_get (sample, k);
+      if (!tf_group_holds (group, row, &verdicts[k], TRUE)
+          || !tf_joy_uses (row, &verdicts[k], params))
+        continue;
+      double x = form->x (fabs (row->lat_deg));
+      fit->n++;
+      fit->no_polarity += row->leading_polarity == 0;
+      if (x > 0.0)
+        ratios[n++] = (TfJoyRatio){ form->y (row->axis_tilt_deg) / x, x };
+    }
+  return tf_joy_ratio_median (ratios, n);
+}
+
 TfJoyFit
 tf_joy_slope (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
               const TfJoyParams *params)
 {
+  if (params->estimator == TF_JOY_ROBUST && params->form != TF_JOY_LINEAR_FREE)
+    {
+      TfJoyFit quick = { .cycle = group->cycle, .hemisphere = group->hemisphere, .intercept = NAN };
+      quick.slope = find_slope (sample, verdicts, group, params, &quick);
+      if (quick.n >= MIN_ROWS && !isnan (quick.slope))
+        return quick;
+    }
   g_auto (Columns) c = gather (sample, verdicts, group, params);
   TfJoyFit fit = { .cycle = group->cycle, .hemisphere = group->hemisphere, .n = c.n,
-                   .leaning = c.leaning, .no_polarity = c.no_polarity, .slope = NAN, .intercept = NAN };
+                   .no_polarity = c.no_polarity, .slope = NAN, .intercept = NAN };
   if (c.n >= MIN_ROWS && tf_joy_offers (params->form, params->estimator))
     tf_joy_points_free (draw_line (&c, params, &fit));
   return fit;

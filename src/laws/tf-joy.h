@@ -9,6 +9,7 @@
 
 #include <glib.h>
 
+#include "tf-bands.h"
 #include "tf-group.h"
 #include "tf-proportion.h"
 #include "tf-verdict.h"
@@ -39,6 +40,7 @@ typedef struct
   double steep_max_deg;      /* 90: |tilt| above is left out */
   double level;
   int draws, seed;
+  const TfCancel *cancel; /* no option: raised, no more is drawn, and there is no interval; NULL */
 } TfJoyParams;
 extern const TfOption tf_joy_options[];
 extern const char *const tf_joy_form_names[]; /* "linear" "linear-free" "sine" "sine-of-tilt" */

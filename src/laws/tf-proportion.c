@@ -296,8 +296,8 @@ percentiles (double *values, guint n, guint draws, double level)
 typedef double (*DrawFunc) (const Clusters *clusters, gsl_rng *rng, gpointer data);
 
 static TfInterval
-bootstrap (const guint32 *cluster, guint n, guint draws, guint64 seed, double level, DrawFunc func,
-           gpointer data)
+bootstrap (const guint32 *cluster, guint n, guint draws, guint64 seed, double level,
+           const TfCancel *cancel, DrawFunc func, gpointer data)
 {
   if (n == 0 || draws == 0 || !level_is_good (level))
     return NO_INTERVAL;
@@ -309,13 +309,14 @@ bootstrap (const guint32 *cluster, guint n, guint draws, guint64 seed, double le
       gsl_rng_set (rng, (unsigned long)seed);
       g_autofree double *values = g_new (double, draws);
       guint good = 0;
-      for (guint d = 0; d < draws; d++)
+      for (guint d = 0; d < draws && !tf_cancel_is_raised (cancel); d++)
         {
           double value = func (&clusters, rng, data);
           if (!isnan (value))
             values[good++] = value;
         }
-      result = percentiles (values, good, draws, level);
+      if (!tf_cancel_is_raised (cancel))
+        result = percentiles (values, good, draws, level);
       gsl_rng_free (rng);
     }
   clusters_clear (&clusters);
@@ -340,11 +341,11 @@ draw_statistic (const Clusters *clusters, gsl_rng *rng, gpointer data)
 
 TfInterval
 tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed, double level,
-                       TfResampleFunc func, gpointer data)
+                       const TfCancel *cancel, TfResampleFunc func, gpointer data)
 {
   g_autoptr (GArray) drawn = g_array_sized_new (FALSE, FALSE, sizeof (guint), n);
   Resample resample = { func, data, drawn };
-  return bootstrap (cluster, n, draws, seed, level, draw_statistic, &resample);
+  return bootstrap (cluster, n, draws, seed, level, cancel, draw_statistic, &resample);
 }
 
 /* Sums over each cluster, made at the first draw. */
@@ -377,10 +378,10 @@ draw_share (const Clusters *clusters, gsl_rng *rng, gpointer data)
 
 TfInterval
 tf_bootstrap_share (const guint32 *cluster, const guint8 *is, guint n, guint draws, guint64 seed,
-                    double level)
+                    double level, const TfCancel *cancel)
 {
   Share share = { is, NULL };
-  TfInterval result = bootstrap (cluster, n, draws, seed, level, draw_share, &share);
+  TfInterval result = bootstrap (cluster, n, draws, seed, level, cancel, draw_share, &share);
   g_free (share.sums);
   return result;
 }

@@ -11,6 +11,8 @@
 
 #include <glib.h>
 
+#include "tf-bands.h"
+
 G_BEGIN_DECLS
 
 typedef struct
@@ -46,14 +48,16 @@ typedef double (*TfResampleFunc) (const guint *rows, guint n, gpointer data);
  * replacement.
  * @cluster: cluster id of each of @n rows (any numbers; only which rows share one matters)
  * @seed: generator mt19937 (its low 32 bits)
- * Draws in which the statistic is NaN are left out. NaN for fewer than two clusters, or when more
- * than half of the draws are NaN.
+ * @cancel: (nullable): raised by another thread, no more is drawn
+ * Draws in which the statistic is NaN are left out. NaN for fewer than two clusters, when more than
+ * half of the draws are NaN, and when it was cancelled.
  */
 TfInterval tf_bootstrap_clusters (const guint32 *cluster, guint n, guint draws, guint64 seed,
-                                  double level, TfResampleFunc func, gpointer data);
+                                  double level, const TfCancel *cancel, TfResampleFunc func,
+                                  gpointer data);
 /** tf_bootstrap_share: tf_bootstrap_clusters() of the share of rows whose @is is not 0, by the same
  * draws, in time that goes with the clusters and not with the rows. */
 TfInterval tf_bootstrap_share (const guint32 *cluster, const guint8 *is, guint n, guint draws,
-                               guint64 seed, double level);
+                               guint64 seed, double level, const TfCancel *cancel);
 
 G_END_DECLS

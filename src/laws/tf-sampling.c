@@ -194,10 +194,39 @@ pick (const Passage *passage, const TfSamplingParams *params, TfSample *picks,
   tf_sample_add (picks, &row);
 }
 
+static gboolean
+are_alone (const TfSample *marks)
+{
+  return tf_sample_count_passages (marks) == tf_sample_get_n (marks);
+}
+
+/* As long as nothing is linked a mark is its passage's first, last and best. */
+static TfSample *
+pick_alone (const TfSample *marks, const TfSamplingParams *params, TfSamplingTally *tally)
+{
+  guint n = tf_sample_get_n (marks);
+  TfSample *picks = tf_sample_new_sized (n);
+  tally->passages = n;
+  for (guint k = 0; k < n; k++)
+    {
+      const TfSampleRow *mark = tf_sample_get (marks, k);
+      const Passage passage = { is_within (mark, params) ? mark : NULL, mark, mark, 1, NULL };
+      pick (&passage, params, picks, tally);
+    }
+  return picks;
+}
+
 TfSample *
 tf_sampling_pick (const TfSample *marks, const TfSamplingParams *params, TfSamplingTally *tally)
 {
   TfSamplingTally own = { 0 };
+  if (params->rule < TF_SAMPLING_MEAN && are_alone (marks))
+    {
+      TfSample *alone = pick_alone (marks, params, &own);
+      if (tally != NULL)
+        *tally = own;
+      return alone;
+    }
   g_autoptr (GArray) passages = gather (marks, params);
   gboolean every = params->rule == TF_SAMPLING_EVERY;
   TfSample *picks = tf_sample_new_sized (every ? tf_sample_get_n (marks) : passages->len);

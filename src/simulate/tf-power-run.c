@@ -90,7 +90,7 @@ run_pair (guint band, guint first, guint n, guint worker, gpointer data)
   add_group (sample, runs, 0, band);
   add_group (sample, runs, 1, band);
   g_autofree TfVerdict *verdicts = judge (sample);
-  TfJoyParams joy;
+  TfJoyParams joy = { 0 };
   tf_options_reset (tf_joy_options, &joy);
   joy.draws = runs->params->what == TF_POWER_SLOPE ? runs->params->draws : 0;
   TfComparison row

@@ -98,7 +98,7 @@ static TfInterval
 interval_of (Columns *c, const TfPairParams *params)
 {
   return tf_bootstrap_clusters (c->block, c->n, (guint)MAX (params->draws, 0),
-                                (guint64)params->seed, params->level, draw_slope, c);
+                                (guint64)params->seed, params->level, NULL, draw_slope, c);
 }
 
 static TfPairBin

@@ -84,13 +84,15 @@ take_what_if (TfFindings *out, const TfFindings *before)
 
 TfFindings *
 tf_study_again (const TfStudyTaken *taken, const TfStudy *study, const TfStretch *stretch,
-                TfFindingsDepth depth, TfLedger *ledger, const TfFindings *before)
+                TfFindingsDepth depth, TfLedger *ledger, const TfFindings *before,
+                const TfCancel *cancel)
 {
   g_return_val_if_fail (taken != NULL && study != NULL && stretch != NULL, NULL);
   gboolean all = tf_stretch_is_all (stretch);
   g_autoptr (TfStudy) own = tf_study_copy (study);
   if (depth < TF_FINDINGS_COMPLETE)
-    own->hale.draws = own->joy.draws = 0;
+    own->hale.draws = own->joy.draws = own->drift.draws = 0;
+  own->hale.cancel = own->joy.cancel = own->drift.cancel = cancel;
   g_autoptr (TfSample) part = all ? NULL : narrow (taken->all, stretch);
   TfStudyRows rows = tf_study_taken_rows (taken);
   if (!all)
@@ -101,6 +103,11 @@ tf_study_again (const TfStudyTaken *taken, const TfStudy *study, const TfStretch
   /* other measures and the hints are read for the whole ledger, not for a stretch */
   TfFindings *findings = tf_study_run_rows (own, &rows, all ? ledger : NULL, taken->floor,
                                             depth == TF_FINDINGS_WHAT_IF);
+  if (tf_cancel_is_raised (cancel))
+    {
+      tf_findings_free (findings);
+      return NULL;
+    }
   if (before != NULL && depth == TF_FINDINGS_COMPLETE)
     take_what_if (findings, before);
   return findings;

@@ -42,10 +42,12 @@ typedef enum
  * tf_study_again: the laws of the rows that lie in the stretch, under @study.
  * @ledger: (nullable): for other choices that need other measures
  * @before: (nullable): findings of the same question with its other choices
+ * @cancel: (nullable): raised by another thread, the draws end at once
+ * Returns: (transfer full): NULL when it was cancelled.
  */
 TfFindings *tf_study_again (const TfStudyTaken *taken, const TfStudy *study,
                             const TfStretch *stretch, TfFindingsDepth depth, TfLedger *ledger,
-                            const TfFindings *before);
+                            const TfFindings *before, const TfCancel *cancel);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfStudyTaken, tf_study_taken_unref)
 

@@ -2,7 +2,7 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 
-/* bench-ledger LEDGER ROUNDS: what a window asks of a large ledger; one line of JSON, least
+/* bench-ledger LEDGER ROUNDS [study]: what a window asks of a large ledger; one line of JSON, least
  * milliseconds of the rounds:
  *   open    the file opened and a version asked for
  *   wings   opened, all points read, judged, and the picture of 1240 x 132 drawn
@@ -11,6 +11,7 @@
  *           and what lies over the dots drawn
  *   study   opened, the default study run with all its what-ifs, without what takes draws
  *   rows    opened, all whole rows read, as an export does (once)
+ * With the word study that alone, for looking at where its time goes.
  * Nothing is judged here whether it is good. */
 
 #include <math.h>
@@ -191,10 +192,16 @@ least (Bench *bench, double (*job) (Bench *), guint rounds)
 int
 main (int argc, char **argv)
 {
-  if (argc != 3)
+  if (argc != 3 && argc != 4)
     return 2;
   guint rounds = (guint)MAX (atoi (argv[2]), 1);
   Bench bench = { .path = argv[1], .study = tf_study_new_default () };
+  if (argc == 4)
+    {
+      printf ("%.1f\n", least (&bench, do_study, rounds));
+      tf_study_free (bench.study);
+      return 0;
+    }
   bench.divides = tf_divides_new (&bench.study->divide);
   bench.picture = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, WIDTH, HEIGHT);
   bench.wings.lat_max_deg = 45;

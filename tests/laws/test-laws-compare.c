@@ -25,7 +25,7 @@ judge (const TfSample *sample)
 static TfJoyParams
 joy_params (int draws)
 {
-  TfJoyParams params;
+  TfJoyParams params = { 0 };
   tf_options_reset (tf_joy_options, &params);
   params.draws = draws;
   return params;
@@ -126,7 +126,7 @@ test_bins (void)
   add_regions (sample, 2013.5, 1, 70, 2, 0.3, 5e22, rand);
   add_regions (sample, 2013.5, 1, 5, 0, 0.3, NAN, rand);
   g_autofree TfVerdict *verdicts = judge (sample);
-  TfHaleParams params;
+  TfHaleParams params = { 0 };
   tf_options_reset (tf_hale_options, &params);
   params.draws = 100;
   guint lacking = 0;
@@ -176,7 +176,7 @@ test_drift (void)
       tf_sample_add (sample, &row);
     }
   g_autofree TfVerdict *verdicts = judge (sample);
-  TfDriftParams params;
+  TfDriftParams params = { 0 };
   tf_options_reset (tf_drift_options, &params);
   params.draws = 200;
   g_autoptr (GArray) drifts = tf_drifts (sample, verdicts, &params);

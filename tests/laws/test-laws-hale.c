@@ -10,7 +10,7 @@
 static TfHaleParams
 hale_params (void)
 {
-  TfHaleParams params;
+  TfHaleParams params = { 0 };
   tf_options_reset (tf_hale_options, &params);
   return params;
 }

@@ -10,7 +10,7 @@
 static TfJoyParams
 joy_params (int form, int estimator)
 {
-  TfJoyParams params;
+  TfJoyParams params = { 0 };
   tf_options_reset (tf_joy_options, &params);
   params.form = form;
   params.estimator = estimator;
@@ -208,7 +208,7 @@ test_default_is_a_weighted_median (void)
       weight[k] = fabs (row->lat_deg);
       ratio[k] = row->axis_tilt_deg / weight[k];
     }
-  TfJoyParams params;
+  TfJoyParams params = { 0 };
   tf_options_reset (tf_joy_options, &params);
   g_assert_cmpint (params.form, ==, TF_JOY_LINEAR);
   g_assert_cmpint (params.estimator, ==, TF_JOY_ROBUST);

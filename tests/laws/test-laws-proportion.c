@@ -169,10 +169,10 @@ test_bootstrap_repeats (void)
       own[k] = k / 2;
       renamed[k] = 4000000000u - 7 * (k / 2);
     }
-  TfInterval one = tf_bootstrap_clusters (own, N, 300, 7, 0.95, mean_of, values);
-  TfInterval again = tf_bootstrap_clusters (own, N, 300, 7, 0.95, mean_of, values);
-  TfInterval named = tf_bootstrap_clusters (renamed, N, 300, 7, 0.95, mean_of, values);
-  TfInterval other = tf_bootstrap_clusters (own, N, 300, 8, 0.95, mean_of, values);
+  TfInterval one = tf_bootstrap_clusters (own, N, 300, 7, 0.95, NULL, mean_of, values);
+  TfInterval again = tf_bootstrap_clusters (own, N, 300, 7, 0.95, NULL, mean_of, values);
+  TfInterval named = tf_bootstrap_clusters (renamed, N, 300, 7, 0.95, NULL, mean_of, values);
+  TfInterval other = tf_bootstrap_clusters (own, N, 300, 8, 0.95, NULL, mean_of, values);
   tf_check_near ("the same seed", again.low, one.low, 0.0);
   tf_check_near ("other names of clusters", named.high, one.high, 0.0);
   g_assert_true (other.low < one.low || other.low > one.low);
@@ -193,8 +193,8 @@ test_bootstrap_width (void)
       alone[2 * k + 1] = 2 * k + 1;
       paired[2 * k] = paired[2 * k + 1] = k;
     }
-  TfInterval pairs = tf_bootstrap_clusters (paired, 2 * N, 2000, 1, 0.95, mean_of, values);
-  TfInterval rows = tf_bootstrap_clusters (alone, 2 * N, 2000, 1, 0.95, mean_of, values);
+  TfInterval pairs = tf_bootstrap_clusters (paired, 2 * N, 2000, 1, 0.95, NULL, mean_of, values);
+  TfInterval rows = tf_bootstrap_clusters (alone, 2 * N, 2000, 1, 0.95, NULL, mean_of, values);
   double half = 1.96 * sqrt (1.0 / 12.0 / N);
   tf_check_near ("width by clusters", pairs.high - pairs.low, 2.0 * half, 0.15 * half);
   tf_check_near ("width by rows is too small", rows.high - rows.low, 2.0 * half / sqrt (2.0),
@@ -223,11 +223,11 @@ test_bootstrap_share (void)
       is[k] = g_rand_double (rand) < 0.07;
       cluster[k] = (guint32)g_rand_int_range (rand, 0, 90);
     }
-  TfInterval plain = tf_bootstrap_clusters (cluster, N, 500, 3, 0.95, share_of, is);
-  TfInterval quick = tf_bootstrap_share (cluster, is, N, 500, 3, 0.95);
+  TfInterval plain = tf_bootstrap_clusters (cluster, N, 500, 3, 0.95, NULL, share_of, is);
+  TfInterval quick = tf_bootstrap_share (cluster, is, N, 500, 3, 0.95, NULL);
   tf_check_near ("low", quick.low, plain.low, 0.0);
   tf_check_near ("high", quick.high, plain.high, 0.0);
-  tf_check_nan ("of no rows", tf_bootstrap_share (cluster, is, 0, 500, 3, 0.95).low);
+  tf_check_nan ("of no rows", tf_bootstrap_share (cluster, is, 0, 500, 3, 0.95, NULL).low);
 }
 
 static void
@@ -235,14 +235,43 @@ test_bootstrap_edges (void)
 {
   double values[] = { 1.0, 2.0, 3.0 };
   guint32 one[] = { 5, 5, 5 }, three[] = { 1, 2, 3 };
-  tf_check_nan ("one cluster", tf_bootstrap_clusters (one, 3, 100, 1, 0.95, mean_of, values).low);
-  tf_check_nan ("no rows", tf_bootstrap_clusters (one, 0, 100, 1, 0.95, mean_of, values).low);
-  tf_check_nan ("no draws", tf_bootstrap_clusters (three, 3, 0, 1, 0.95, mean_of, values).low);
-  tf_check_nan ("a bad level", tf_bootstrap_clusters (three, 3, 100, 1, 1.0, mean_of, values).low);
+  tf_check_nan ("one cluster", tf_bootstrap_clusters (one, 3, 100, 1, 0.95, NULL, mean_of, values).low);
+  tf_check_nan ("no rows", tf_bootstrap_clusters (one, 0, 100, 1, 0.95, NULL, mean_of, values).low);
+  tf_check_nan ("no draws", tf_bootstrap_clusters (three, 3, 0, 1, 0.95, NULL, mean_of, values).low);
+  tf_check_nan ("a bad level", tf_bootstrap_clusters (three, 3, 100, 1, 1.0, NULL, mean_of, values).low);
   tf_check_nan ("no statistic",
-                tf_bootstrap_clusters (three, 3, 100, 1, 0.95, nothing_of, values).low);
+                tf_bootstrap_clusters (three, 3, 100, 1, 0.95, NULL, nothing_of, values).low);
   tf_check_between ("three clusters",
-                    tf_bootstrap_clusters (three, 3, 100, 1, 0.95, mean_of, values).low, 1.0, 2.0);
+                    tf_bootstrap_clusters (three, 3, 100, 1, 0.95, NULL, mean_of, values).low, 1.0, 2.0);
+}
+
+typedef struct
+{
+  TfCancel *cancel;
+  guint calls, until;
+} Counted;
+
+static double
+count_call (const guint *rows, guint n, gpointer data)
+{
+  Counted *counted = data;
+  if (++counted->calls == counted->until)
+    tf_cancel_raise (counted->cancel);
+  return counted->calls;
+}
+
+/* The draw in hand is the last, and there is no interval. */
+static void
+test_cancelled (void)
+{
+  const guint32 cluster[] = { 1, 2, 3 };
+  g_autoptr (TfCancel) cancel = tf_cancel_new ();
+  Counted counted = { cancel, 0, 7 };
+  TfInterval none = tf_bootstrap_clusters (cluster, 3, 1000, 1, 0.95, cancel, count_call, &counted);
+  g_assert_cmpuint (counted.calls, ==, 7);
+  tf_check_nan ("cancelled", none.low);
+  const guint8 is[] = { 1, 0, 1 };
+  tf_check_nan ("cancelled before", tf_bootstrap_share (cluster, is, 3, 100, 1, 0.95, cancel).low);
 }
 
 void
@@ -260,4 +289,5 @@ test_laws_add_proportion (void)
   g_test_add_func ("/laws/bootstrap/clusters-are-drawn-whole", test_bootstrap_width);
   g_test_add_func ("/laws/bootstrap/shares-the-quick-way", test_bootstrap_share);
   g_test_add_func ("/laws/bootstrap/edges-have-an-answer", test_bootstrap_edges);
+  g_test_add_func ("/laws/bootstrap/cancelled-at-the-next-draw", test_cancelled);
 }

@@ -92,7 +92,7 @@ static void
 test_slope (void)
 {
   GRand *random = g_rand_new_with_seed (7);
-  TfJoyParams params;
+  TfJoyParams params = { 0 };
   tf_options_reset (tf_joy_options, &params);
   const TfGroup all = tf_group_of (0, 0);
   for (guint turn = 0; turn < 300; turn++)

@@ -69,8 +69,8 @@ test_moves (void)
   GRand *random = g_rand_new_with_seed (11);
   g_autoptr (TfSample) sample = make_sample (6000, random);
   TfVerdictParams verdict = test_laws_verdict_params ();
-  TfHaleParams hale;
-  TfJoyParams joy;
+  TfHaleParams hale = { 0 };
+  TfJoyParams joy = { 0 };
   tf_options_reset (tf_hale_options, &hale);
   tf_options_reset (tf_joy_options, &joy);
   hale.draws = joy.draws = 0;
@@ -120,7 +120,7 @@ test_changing (void)
     verdicts[k] = tf_verdict_judge (tf_sample_get (sample, k), divides, &params);
   verdicts[1].kind = TF_VERDICT_CANNOT_SAY;
   verdicts[1].reason = "hale-changes";
-  TfJoyParams joy;
+  TfJoyParams joy = { 0 };
   tf_options_reset (tf_joy_options, &joy);
   g_autoptr (TfTally) tally = tf_tally_new (sample, verdicts, divides, &params, &joy);
   for (int lat = 5; lat <= 35; lat += 30)
@@ -143,7 +143,7 @@ test_nothing (void)
   g_autoptr (TfSample) sample = tf_sample_new ();
   g_autoptr (TfDivides) divides = test_laws_divides ();
   TfVerdictParams verdict = test_laws_verdict_params ();
-  TfJoyParams joy;
+  TfJoyParams joy = { 0 };
   tf_options_reset (tf_joy_options, &joy);
   g_autoptr (TfTally) tally = tf_tally_new (sample, NULL, divides, &verdict, &joy);
   g_assert_cmpuint (tf_tally_move (tally, divides, 24, 1), ==, 0);

@@ -7,6 +7,7 @@
 
 #include "test-ledger.h"
 
+#include "tf-ledger-brief.h"
 #include "tf-ledger-follow.h"
 #include "tf-rotation.h"
 
@@ -482,9 +483,47 @@ test_tampering (Fixture *f, gconstpointer data)
     }
 }
 
+/* Briefs stand in the passages in which the whole rows stand, and were born where they were. */
+static void
+test_briefs (Fixture *f, gconstpointer data)
+{
+  gint64 person = tf_ledger_person (f->ledger, "north", NULL);
+  fill_all (f);
+  follow (f->ledger, NULL);
+  gint64 mark = keep_hint (f->ledger, hint_at (f->ledger, 1, 2), person, 0);
+  fixture_sql (f->path, "UPDATE passage SET born = 1 WHERE id = (SELECT passage FROM member ORDER BY passage LIMIT 1)");
+  g_autoptr (TfBriefs) briefs = tf_ledger_briefs (f->ledger, &(TfBriefQuery){ .hints = TRUE }, NULL);
+  g_autoptr (GPtrArray) rows
+      = tf_ledger_rows (f->ledger, &(TfRowQuery){ .marks = TRUE, .hints = TRUE, .no_outlines = TRUE }, NULL);
+  g_assert_cmpuint (briefs->rows->len, ==, 24);
+  g_assert_cmpuint (rows->len, ==, 24);
+  guint born = 0, found = 0;
+  for (guint k = 0; k < 24; k++)
+    for (guint j = 0; j < 24; j++)
+      {
+        const TfRow *row = g_ptr_array_index (rows, j);
+        const TfBrief *brief = &g_array_index (briefs->rows, TfBrief, k);
+        if (row->mark != brief->mark || row->is_hint != brief->hint)
+          continue;
+        g_assert_cmpint (brief->passage, ==, row->passage_key);
+        g_assert_cmpint (brief->same, ==, row->same);
+        g_assert_cmpint (brief->born, ==, row->born);
+        g_assert_cmpuint (brief->region, ==, row->region_key);
+        born += brief->born == TF_END_ON_DISK;
+        found++;
+      }
+  g_assert_cmpuint (found, ==, 24);
+  g_assert_cmpuint (born, ==, 8);
+  const TfBrief *first = &g_array_index (briefs->rows, TfBrief, 0);
+  g_assert_cmpint (first->mark, ==, mark);
+  g_assert_cmpint (first->passage, !=, 0); /* its hint's: follow has not seen it */
+  g_assert_cmpuint (briefs->n_hints, ==, 23);
+}
+
 void
 add_follow_tests (void)
 {
+  FIXTURE_TEST ("/ledger/follow/briefs-are-in-the-same-passages", test_briefs);
   FIXTURE_TEST ("/ledger/follow/three-regions-are-three-passages", test_three_passages);
   FIXTURE_TEST ("/ledger/follow/frames-in-any-order-give-the-same", test_any_order);
   FIXTURE_TEST ("/ledger/follow/a-kept-hint-stays-in-its-passage", test_kept_in_its_passage);

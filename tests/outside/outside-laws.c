@@ -157,7 +157,7 @@ print_fits (void)
     for (int form = 0; form < 4; form++)
       for (int estimator = 0; estimator < 4; estimator++)
         {
-          TfJoyParams params;
+          TfJoyParams params = { 0 };
           tf_options_reset (tf_joy_options, &params);
           params.form = form;
           params.estimator = estimator;

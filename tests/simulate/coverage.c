@@ -30,8 +30,8 @@ holds (TfInterval interval, double truth)
 static void
 run_seed (const TfCyclesParams *params, int draws, Coverage *coverage)
 {
-  TfHaleParams hale;
-  TfJoyParams joy;
+  TfHaleParams hale = { 0 };
+  TfJoyParams joy = { 0 };
   TfSamplingParams sampling;
   tf_options_reset (tf_hale_options, &hale);
   tf_options_reset (tf_joy_options, &joy);

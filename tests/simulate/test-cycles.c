@@ -72,7 +72,7 @@ test_drift (void)
   params.n_cycles = 1;
   g_autoptr (TfInvented) invented = tf_cycles_invent (&params);
   g_autofree TfVerdict *verdicts = judge (invented->sample);
-  TfDriftParams drift;
+  TfDriftParams drift = { 0 };
   tf_options_reset (tf_drift_options, &drift);
   drift.draws = 0;
   g_autoptr (GArray) drifts = tf_drifts (invented->sample, verdicts, &drift);

@@ -3,6 +3,8 @@
  */
 #include "test-study.h"
 
+#include "tf-follow.h"
+
 #include "tf-check.h"
 #include "tf-json.h"
 
@@ -154,9 +156,30 @@ test_json_of_a_verdict (void)
   g_assert_true (json_object_get_null_member (unsure, "polarity_tilt_deg"));
 }
 
+/* Where it was born as its passage has it: on the disk, elsewhere, not known. */
+static void
+test_born (void)
+{
+  static const struct
+  {
+    int born;
+    gint8 told;
+  } ends[] = { { TF_END_UNKNOWN, -1 }, { TF_END_ON_DISK, 1 }, { TF_END_LIMB, 0 }, { TF_END_FAR_SIDE, 0 } };
+  for (guint k = 0; k < G_N_ELEMENTS (ends); k++)
+    {
+      TfRow row = { .mark = 5, .region_key = 3, .passage_key = 2, .origin = "changed", .born = ends[k].born };
+      row.measure = test_study_measure (12, 1);
+      TfSampleRow sample;
+      tf_study_row (&row, &sample);
+      g_assert_cmpint (sample.born, ==, ends[k].told);
+      g_clear_pointer (&row.measure.cautions, g_ptr_array_unref);
+    }
+}
+
 void
 test_study_add_row (void)
 {
+  g_test_add_func ("/study/row/born-as-its-passage-was", test_born);
   g_test_add_func ("/study/row/a-measure-becomes-a-row", test_measure_becomes_a_row);
   g_test_add_func ("/study/row/witnesses-differ-when-two-that-spoke-do", test_witnesses);
   g_test_add_func ("/study/row/one-pole-and-poles-astride-the-equator",

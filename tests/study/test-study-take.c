@@ -163,8 +163,86 @@ test_briefs (void)
     }
 }
 
+/* Every mark measured with its own floor, the study's, one a fifth lower and one a fifth higher: of each
+ * another tilt, exactly in proportion to latitude, and another number of regions that break. */
+static const struct
+{
+  double gauss, slope; /* gauss 0: the mark's own */
+  guint breaks;        /* of forty */
+  const char *row;
+} floors[] = { { 0, 0.4, 1, "floor-of-each-mark" },
+               { 48, 0.3, 2, "as-chosen" },
+               { 0.8 * 48, 0.2, 8, "floor-a-fifth-lower" },
+               { 1.2 * 48, 0.6, 4, "floor-a-fifth-higher" } };
+
+static TfMeasure
+measured (guint k, guint floor)
+{
+  double lat = (k % 2 == 0 ? 1.0 : -1.0) * (6.0 + k % 20);
+  gboolean breaks = k < floors[floor].breaks;
+  TfMeasure m = test_study_measure (lat, (lat > 0 ? -1 : 1) * (breaks ? -1 : 1)); /* cycle 24 */
+  m.axis_tilt_deg = floors[floor].slope * fabs (lat);
+  return m;
+}
+
+static void
+test_floors_move_the_rows (void)
+{
+  g_auto (TestLedger) t = { 0 };
+  test_study_ledger_open (&t);
+  TfMeasureParams params;
+  tf_options_reset (tf_measure_options, &params);
+  const TfCorrection none = tf_correction_none ();
+  g_autofree char *method = tf_measure_dup_method (&params, &none);
+  gint64 frame = test_study_frame (&t, "2013-06-01T00:00:00Z", "TEST-A", 8);
+  g_autoptr (TfStudy) study = tf_study_new_default ();
+  study->hale.draws = study->joy.draws = study->drift.draws = 0;
+  for (guint k = 0; k < 40; k++)
+    {
+      g_auto (TfMeasure) own = measured (k, 0);
+      own.carrington_lon_deg = 9.0 * k; /* each an outline of its own */
+      g_autoptr (TfRow) row = tf_ledger_row (t.ledger, keep (&t, frame, method, &own), FALSE, NULL);
+      for (guint f = 1; f < G_N_ELEMENTS (floors); f++)
+        {
+          g_auto (TfMeasure) other = measured (k, f);
+          /* before the last one is there the rows are not: half a sample would be another sample */
+          if (k == 39 && f == 2)
+            {
+              g_autoptr (TfFindings) found = tf_study_run (study, t.ledger, NULL);
+              for (guint r = 0; r < found->what_if->len; r++)
+                {
+                  const TfWhatIf *w = &g_array_index (found->what_if, TfWhatIf, r);
+                  if (strcmp (w->name, "floor-a-fifth-lower") == 0)
+                    {
+                      g_assert_cmpstr (w->missing, ==, "not-measured");
+                      g_assert_cmpuint (w->n_missing, ==, 1);
+                    }
+                }
+            }
+          measure_even (&t, frame, row->outline, method, floors[f].gauss, other);
+        }
+    }
+  g_autoptr (TfFindings) found = tf_study_run (study, t.ledger, NULL);
+  guint seen = 0;
+  for (guint r = 0; r < found->what_if->len; r++)
+    for (guint f = 0; f < G_N_ELEMENTS (floors); f++)
+      {
+        const TfWhatIf *w = &g_array_index (found->what_if, TfWhatIf, r);
+        if (strcmp (w->name, floors[f].row) != 0)
+          continue;
+        g_assert_null (w->missing);
+        g_assert_cmpuint (w->n, ==, 40);
+        g_assert_cmpuint (w->breaks, ==, floors[f].breaks);
+        tf_check_near (w->name, w->share, floors[f].breaks / 40.0, 1e-12);
+        tf_check_near (w->name, w->slope, floors[f].slope, 1e-12);
+        seen++;
+      }
+  g_assert_cmpuint (seen, ==, G_N_ELEMENTS (floors));
+}
+
 void
 test_study_add_take (void)
 {
+  g_test_add_func ("/study/what-if/floors-move-the-rows", test_floors_move_the_rows);
   g_test_add_func ("/study/take/briefs-say-what-whole-rows-say", test_briefs);
 }
