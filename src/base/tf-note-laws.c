@@ -7,6 +7,9 @@
 
 /* One row a code, in the order of the code's name. */
 const TfNoteKind tf_note_kinds_laws[] = {
+  { "condition-names-nothing", TF_NOTE_CAUTION,
+    N_ ("A condition names the {0} {1}, which no row has. A passage has another id when an earlier frame of "
+        "it is filled in: follow prints them.") },
   { "cycle-before-table", TF_NOTE_REASON,
     N_ ("The time is before cycle 1, the first of the table: the cycle is unknown.") },
   { "cycle-by-date", TF_NOTE_INFO, N_ ("The cycle follows from the date: no minimum is near.") },

@@ -2,7 +2,9 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 #include <math.h>
+#include <string.h>
 
+#include "tf-sieve.h"
 #include "tf-study-private.h"
 
 /* What must be said beside the numbers of a study. */
@@ -133,6 +135,44 @@ tf_study_copy_cautions (const TfNotes *before, const TfStudy *study, TfNotes *ou
   note_divides (out, study);
 }
 
+/* -- conditions that name what is not there ---------------------------------------------------- */
+
+static gboolean
+names_one (const TfCondition *c)
+{
+  static const char *const columns[] = { "passage", "region", "mark", NULL };
+  return g_strv_contains (columns, c->column->name)
+         && (c->is == TF_IS_EQUALS || c->is == TF_IS_NOT || c->is == TF_IS_ONE_OF
+             || c->is == TF_IS_NONE_OF);
+}
+
+static gboolean
+is_there (const TfStudyRows *rows, const TfColumn *column, const char *name)
+{
+  for (guint k = 0; k < rows->rows->len; k++)
+    {
+      const TfExportRow row = { .row = g_ptr_array_index (rows->rows, k) };
+      g_autofree char *text = tf_column_dup_text (column, &row);
+      if (strcmp (text, name) == 0)
+        return TRUE;
+    }
+  return FALSE;
+}
+
+/* A passage has another name when an earlier frame of it is filled in: a study that names the old one
+ * says so, and does not only become smaller. */
+static void
+note_named (TfNotes *cautions, const GPtrArray *conditions, const TfStudyRows *rows)
+{
+  for (guint k = 0; rows->rows != NULL && k < conditions->len; k++)
+    {
+      const TfCondition *c = g_ptr_array_index (conditions, k);
+      for (guint v = 0; names_one (c) && v < c->n; v++)
+        if (c->texts[v] != NULL && !is_there (rows, c->column, c->texts[v]))
+          tf_notes_add (cautions, "condition-names-nothing", "ss", c->column->name, c->texts[v]);
+    }
+}
+
 void
 tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows)
 {
@@ -141,6 +181,8 @@ tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudy
   if (findings->n_hints > 0)
     tf_notes_add (cautions, "hints-counted", "ii", (int)findings->n_hints, (int)findings->n_marks);
   note_outside (findings, rows);
+  note_named (cautions, study->mark_conditions, rows);
+  note_named (cautions, study->region_conditions, rows);
   note_instruments (findings, study, rows);
   note_scales (findings, study, rows);
   note_divides (cautions, study);

@@ -402,6 +402,58 @@ test_marks_of_one_region (Fixture *f, gconstpointer data)
   g_assert_cmpuint (sum.passages, ==, 1);
 }
 
+/* An earlier frame filled in gives a passage another id; what people said of it stands where it stood:
+ * the cut, the join, the return that was confirmed, the class and the note of its region. */
+static void
+test_earlier_frame (Fixture *f, gconstpointer data)
+{
+  g_autoptr (GError) error = NULL;
+  TfFollowSum sum;
+  gint64 person = tf_ledger_person (f->ledger, "north", NULL);
+  for (int n = 2; n < 10; n++)
+    fill_frame (f->ledger, n);
+  for (int n = 108; n < 112; n++) /* 27 days later */
+    fill_frame (f->ledger, n);
+  follow (f->ledger, &sum);
+  guint regions = sum.regions;
+  TfSight first = hint_at (f->ledger, 2, 1);
+  gint64 passage = tf_ledger_passage_of (f->ledger, first);
+  g_autoptr (TfPassageRow) before = tf_ledger_passage (f->ledger, passage, &error);
+  g_assert_true (tf_ledger_cut (f->ledger, hint_at (f->ledger, 0, 4), hint_at (f->ledger, 0, 5),
+                                person, "cut", &error));
+  g_assert_true (tf_ledger_link (f->ledger, hint_at (f->ledger, 0, 6), hint_at (f->ledger, 1, 6),
+                                 person, "join", &error));
+  g_assert_true (tf_ledger_link (f->ledger, hint_at (f->ledger, 2, 8), hint_at (f->ledger, 2, 9),
+                                 person, "come round", &error));
+  gint64 mark = keep_hint (f->ledger, first, person, 0), region = fixture_region (f->ledger, mark);
+  g_assert_true (tf_ledger_set_note (f->ledger, region, person, "watch it", &error));
+  follow (f->ledger, &sum);
+  TfFollowSum then = sum;
+  g_assert_cmpuint (sum.regions, ==, regions - 1); /* cut +1, join -1, return -1 */
+  for (int n = 1; n >= 0; n--) /* frames 13 and 14 of the ledger, the earliest */
+    fill_frame (f->ledger, n);
+  follow (f->ledger, &sum);
+  g_assert_cmpuint (sum.ties_lost, ==, 0);
+  g_assert_cmpuint (sum.ties, ==, 3);
+  g_assert_cmpuint (sum.passages, ==, then.passages);
+  g_assert_cmpuint (sum.regions, ==, then.regions);
+  gint64 now = tf_ledger_passage_of (f->ledger, (TfSight){ mark, FALSE });
+  g_autoptr (TfPassageRow) after = tf_ledger_passage (f->ledger, now, &error);
+  g_assert_cmpstr (after->content_id, !=, before->content_id); /* it was renamed indeed */
+  g_assert_cmpuint (after->n_frames, ==, before->n_frames + 2);
+  g_assert_cmpint (after->region, ==, region);
+  g_assert_cmpint (tf_ledger_passage_of (f->ledger, hint_at (f->ledger, 0, 4)), !=,
+                   tf_ledger_passage_of (f->ledger, hint_at (f->ledger, 0, 5)));
+  g_assert_cmpint (tf_ledger_passage_of (f->ledger, hint_at (f->ledger, 0, 6)), ==,
+                   tf_ledger_passage_of (f->ledger, hint_at (f->ledger, 1, 6)));
+  g_autoptr (TfPassageRow) later = tf_ledger_passage (
+      f->ledger, tf_ledger_passage_of (f->ledger, hint_at (f->ledger, 2, 9)), &error);
+  g_assert_cmpint (later->same, ==, after->same);
+  g_autofree char *note = fixture_sql_text (f->path, "SELECT text FROM note");
+  g_assert_cmpstr (note, ==, "watch it");
+  fixture_check (f->ledger, "");
+}
+
 static void
 test_known_and_recognised (Fixture *f, gconstpointer data)
 {
@@ -524,6 +576,8 @@ void
 add_follow_tests (void)
 {
   FIXTURE_TEST ("/ledger/follow/briefs-are-in-the-same-passages", test_briefs);
+  FIXTURE_TEST ("/ledger/follow/what-was-said-stands-when-an-earlier-frame-comes",
+                test_earlier_frame);
   FIXTURE_TEST ("/ledger/follow/three-regions-are-three-passages", test_three_passages);
   FIXTURE_TEST ("/ledger/follow/frames-in-any-order-give-the-same", test_any_order);
   FIXTURE_TEST ("/ledger/follow/a-kept-hint-stays-in-its-passage", test_kept_in_its_passage);
