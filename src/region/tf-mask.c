@@ -210,7 +210,7 @@ tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min
                    float least_gauss)
 {
   g_return_val_if_fail (frame != NULL && outline != NULL, NULL);
-  TfMask *mask = g_atomic_rc_box_new0 (TfMask);
+  TfMask *mask = g_new0 (TfMask, 1);
   const TfGeometry *g = tf_frame_get_geometry (frame);
   g_autoptr (TfOutline) here = tf_mask_outline (frame, outline, law);
   g_autoptr (TfFill) fill = tf_fill_new (here);
@@ -223,24 +223,13 @@ tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min
   return mask;
 }
 
-TfMask *
-tf_mask_ref (TfMask *mask)
-{
-  return g_atomic_rc_box_acquire (mask);
-}
-
-static void
-clear (gpointer data)
-{
-  TfMask *mask = data;
-  g_free (mask->pixels);
-}
-
 void
-tf_mask_unref (TfMask *mask)
+tf_mask_free (TfMask *mask)
 {
-  if (mask != NULL)
-    g_atomic_rc_box_release_full (mask, clear);
+  if (mask == NULL)
+    return;
+  g_free (mask->pixels);
+  g_free (mask);
 }
 
 guint

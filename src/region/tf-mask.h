@@ -26,7 +26,7 @@ typedef struct
   double unit[3];   /* Carrington frame */
 } TfMaskPixel;
 
-typedef struct _TfMask TfMask; /* immutable, reference counted */
+typedef struct _TfMask TfMask; /* immutable */
 
 /** tf_mask_outline: (transfer full): @outline carried to the frame's time by rotation law @law. On a map, whose columns are of
  * different times, and where a time is unknown, it stays where it is drawn. */
@@ -36,8 +36,7 @@ TfMask *tf_mask_new (const TfFrame *frame, const TfOutline *outline, double mu_m
 /** tf_mask_new_above: only pixels whose field as observed is @least_gauss or more of either sign; none is counted as missing.
  * 0: all pixels. */
 TfMask *tf_mask_new_above (const TfFrame *frame, const TfOutline *outline, double mu_min, guint law, float least_gauss);
-TfMask *tf_mask_ref (TfMask *mask);
-void tf_mask_unref (TfMask *mask);
+void tf_mask_free (TfMask *mask);
 guint tf_mask_get_n (const TfMask *mask);
 const TfMaskPixel *tf_mask_get (const TfMask *mask, guint k);
 /** tf_mask_get_missing: pixels inside the outline without a value (on the disk); tf_mask_get_cut: part of the outline beyond mu_min or the frame (0-1). */
@@ -46,6 +45,6 @@ double tf_mask_get_cut (const TfMask *mask);
 /** tf_mask_get_box: box of the frame that holds the mask, from its 0-based corner. */
 void tf_mask_get_box (const TfMask *mask, guint *x0, guint *y0, guint *width, guint *height);
 
-G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfMask, tf_mask_unref)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfMask, tf_mask_free)
 
 G_END_DECLS

@@ -58,7 +58,7 @@ tf_potential_new (const TfFrame *frame, const TfOutline *outline, double step_mm
                             (const double (*)[3])patch->line, patch->seen);
   if (field == NULL)
     return NULL;
-  TfPotential *p = g_atomic_rc_box_new0 (TfPotential);
+  TfPotential *p = g_new0 (TfPotential, 1);
   p->patch = g_steal_pointer (&patch);
   p->added = g_new0 (double, p->patch->n);
   p->left = field->left;
@@ -66,25 +66,14 @@ tf_potential_new (const TfFrame *frame, const TfOutline *outline, double step_mm
   return p;
 }
 
-TfPotential *
-tf_potential_ref (TfPotential *potential)
+void
+tf_potential_free (TfPotential *p)
 {
-  return g_atomic_rc_box_acquire (potential);
-}
-
-static void
-clear (gpointer data)
-{
-  TfPotential *p = data;
+  if (p == NULL)
+    return;
   tf_patch_free (p->patch);
   g_free (p->added);
-}
-
-void
-tf_potential_unref (TfPotential *potential)
-{
-  if (potential != NULL)
-    g_atomic_rc_box_release_full (potential, clear);
+  g_free (p);
 }
 
 double

@@ -31,8 +31,7 @@ typedef struct _TfPotential TfPotential;
  */
 TfPotential *
 tf_potential_new (const TfFrame *frame, const TfOutline *outline, double step_mm, double margin_mm);
-TfPotential *tf_potential_ref (TfPotential *potential);
-void tf_potential_unref (TfPotential *potential);
+void tf_potential_free (TfPotential *potential);
 
 /**
  * tf_potential_radial:
@@ -45,6 +44,6 @@ double tf_potential_radial (const TfPotential *potential, const double unit[3],
  * of its rms. */
 double tf_potential_get_left (const TfPotential *potential);
 
-G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPotential, tf_potential_unref)
+G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPotential, tf_potential_free)
 
 G_END_DECLS

@@ -236,6 +236,10 @@ def _():
     asked = [hint["measure"]["complexity"] for hint in document("hints", "--json", "--complexity", "--floor-kind", "even", path)[0]["hints"]]
     given = [found for found in asked if found is not None]
     assert given and all(found["mu"] >= 0.7 for found in given)
+    assert all(any("not a flare forecast" in note["text"] for note in found["cautions"]) for found in given)
+    table = call("hints", "--complexity", "--floor-kind", "even", path).stdout
+    assert table.count("not a flare forecast") == len(given) == table.count("Schrijver's R")
+    assert "Schrijver" not in call("hints", path).stdout
     ledger, out = os.path.join(work, "tangled.ledger"), os.path.join(work, "tangled.json")
     call("fill", ledger, path)
     call("export", ledger, out, "--with-hints")

@@ -188,7 +188,7 @@ serve (const char *path, guint threads)
     run_job (&bench, g_strchomp (line));
   g_free (bench.picture);
   bench_bare_free (bench.bare);
-  tf_mask_unref (bench.mask);
+  tf_mask_free (bench.mask);
   tf_outline_unref (bench.outline);
   tf_frame_unref (bench.frame);
   tf_workers_unref (bench.work.workers);

@@ -24,11 +24,26 @@ typedef struct
   guint n_scales;
 } Campaign;
 
-/* Bipole hints of the finer frame and how far the coarser frame's best one agrees. */
+/* Bipole hints of the finer frame and how far the coarser frame's best one agrees: all of them, and those above LARGE_MX. */
 typedef struct
 {
   guint n, flux_alike, area_alike; /* by 0.8 or more */
+} Count;
+
+typedef struct
+{
+  Count all, large;
 } Alike;
+
+static const double LARGE_MX = 1e21;
+
+static void
+count (Count *to, const HintOverlap *overlap)
+{
+  to->n++;
+  to->flux_alike += overlap->flux >= 0.8;
+  to->area_alike += overlap->area >= 0.8;
+}
 
 static void
 compare (const TfFrame *fine, const GPtrArray *hints, const GPtrArray *coarse, Alike *alike)
@@ -40,9 +55,9 @@ compare (const TfFrame *fine, const GPtrArray *hints, const GPtrArray *coarse, A
       if (hint->unipolar)
         continue;
       hints_best (fine, coarse, hint->outline, &overlap);
-      alike->n++;
-      alike->flux_alike += overlap.flux >= 0.8;
-      alike->area_alike += overlap.area >= 0.8;
+      count (&alike->all, &overlap);
+      if (hint->measure.flux_unsigned_mx > LARGE_MX)
+        count (&alike->large, &overlap);
       if (overlap.flux < 0.8)
         printf ("  overlap %.2f by flux, %.2f by area: N%+.1f W%+.1f mu %.2f flux %.2e\n", overlap.flux, overlap.area,
                 hint->measure.lat_deg, hint->measure.cmd_deg, hint->measure.mu, hint->measure.flux_unsigned_mx);
@@ -76,16 +91,24 @@ run_disk (const Campaign *campaign, guint k, MadeScore *scores, Alike *alike, co
 }
 
 static void
+print_count (const double scales[2], const char *which, const Count *count)
+{
+  if (count->n > 0)
+    printf ("%.1f and %.1f arcsec: of %u %s %.1f %% overlap by 0.8 in flux, %.1f %% in area\n", scales[0], scales[1], count->n,
+            which, 100.0 * count->flux_alike / count->n, 100.0 * count->area_alike / count->n);
+}
+
+static void
 print_sums (const Campaign *campaign, const MadeScore *scores, const Alike *alike)
 {
   for (guint s = 0; s < campaign->n_scales; s++)
     {
       g_autofree char *text = made_score_dup_text (&scores[s]);
       printf ("%.1f arcsec: %s\n", campaign->scale[s], text);
-      if (s > 0 && alike[s].n > 0)
-        printf ("%.1f and %.1f arcsec: of %u bipole hints %.1f %% overlap by 0.8 in flux, %.1f %% in area\n",
-                campaign->scale[s - 1], campaign->scale[s], alike[s].n, 100.0 * alike[s].flux_alike / alike[s].n,
-                100.0 * alike[s].area_alike / alike[s].n);
+      if (s == 0)
+        continue;
+      print_count (&campaign->scale[s - 1], "bipole hints", &alike[s].all);
+      print_count (&campaign->scale[s - 1], "bipole hints above 1e21 Mx", &alike[s].large);
     }
 }
 
@@ -118,7 +141,7 @@ main (int argc, char **argv)
 {
   Campaign campaign = { .disks = 30, .first = 1 };
   MadeScore scores[MOST_SCALES];
-  Alike alike[MOST_SCALES] = { { 0 } };
+  Alike alike[MOST_SCALES] = { { { 0 } } };
   if (!read_words (&campaign, argc, argv))
     return 2;
   g_autoptr (TfWorkers) workers = tf_workers_new (0);
