@@ -204,12 +204,67 @@ tf_emergence_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartSt
   cairo_restore (cr);
 }
 
-/* An age holds many regions: none is meant before the others. */
+/* An age holds many regions: one after the other, those that break Hale's law or not alike. */
 int
 tf_emergence_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
                        double y, int after)
 {
-  return -1;
+  TfPlot plot = plot_of (charts, style, area, 0);
+  double age = tf_plot_back_x (&plot, x);
+  guint n = charts->ages[TF_EMERGENCE_WHOLE]->len;
+  if (n == 0 || !(age >= plot.x0 && age < plot.x1))
+    return -1;
+  guint bin = MIN ((guint)((age - plot.x0) / charts->emergence.bin_days), n - 1);
+  int first = -1, next = -1; /* by row: the least of all, and the least above @after */
+  for (guint k = 0; k < charts->seen->len; k++)
+    {
+      const TfChartSight *seen = &g_array_index (charts->seen, TfChartSight, k);
+      int row = (int)seen->row;
+      if (seen->age != bin)
+        continue;
+      first = first < 0 || row < first ? row : first;
+      if (row > after && (next < 0 || row < next))
+        next = row;
+    }
+  return next >= 0 ? next : first;
+}
+
+double *
+tf_emergence_plot_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n)
+{
+  const GArray *ages = charts->ages[TF_EMERGENCE_WHOLE];
+  double *xy = g_new (double, 2 * PANELS * ages->len + 2);
+  *n = PANELS * ages->len;
+  for (guint k = 0; k < *n; k++)
+    {
+      int panel = (int)(k / ages->len);
+      TfPlot plot = plot_of (charts, style, area, panel);
+      const TfEmergenceAge *age = &g_array_index (ages, TfEmergenceAge, k % ages->len);
+      const TfSpread *s = spread_of (age, panel);
+      xy[2 * k] = s->n >= LEAST ? tf_plot_x (&plot, age->age_days) : NAN;
+      xy[2 * k + 1] = tf_plot_y (&plot, s->median / unit_of (panel));
+    }
+  return xy;
+}
+
+char *
+tf_emergence_plot_dup_sign (const TfLawsCharts *charts, guint k)
+{
+  const GArray *ages = charts->ages[TF_EMERGENCE_WHOLE];
+  int panel = (int)(k / ages->len);
+  const TfEmergenceAge *age = &g_array_index (ages, TfEmergenceAge, k % ages->len);
+  const TfSpread *s = spread_of (age, panel);
+  double unit = unit_of (panel);
+  switch (panel)
+    {
+    case 0:
+      return g_strdup_printf (_ ("day %.1f: median tilt %.1f°, quartiles %.1f° to %.1f°, n %u"), age->age_days, s->median, s->low, s->high, s->n);
+    case 1:
+      return g_strdup_printf (_ ("day %.1f: median separation %.1f°, quartiles %.1f° to %.1f°, n %u"), age->age_days, s->median, s->low, s->high, s->n);
+    default:
+      return g_strdup_printf (_ ("day %.1f: median flux %.2f·10²¹ Mx, quartiles %.2f to %.2f, n %u"), age->age_days, s->median / unit, s->low / unit,
+                              s->high / unit, s->n);
+    }
 }
 
 char *

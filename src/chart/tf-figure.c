@@ -171,16 +171,26 @@ draw_one (cairo_t *cr, const TfChartStyle *style, TfArea area, gpointer data)
 }
 
 static gboolean
-write_one (const One *one, const char *path, const char *subject, GError **error)
+write_one (const One *one, const char *path, const char *subject, TfCancel *cancel, GError **error)
 {
   TfFigurePage page = { .width_mm = COLUMN_MM,
                         .text_mm = TEXT_MM,
                         .title = _ (one->chart->title),
-                        .subject = subject };
+                        .subject = subject,
+                        .cancel = cancel };
   TfChartStyle style = print_style (&page);
   page.height_mm
       = one->chart->height (one->charts, &style, page.width_mm * POINTS_A_MM) / POINTS_A_MM;
   return tf_figure_write (path, &page, draw_one, (gpointer)one, error);
+}
+
+gboolean
+tf_laws_chart_write (const TfLawsChart *chart, const TfLawsCharts *charts, const char *path,
+                     const char *subject, TfCancel *cancel, GError **error)
+{
+  g_return_val_if_fail (chart != NULL && charts != NULL && path != NULL, FALSE);
+  const One one = { charts, chart };
+  return write_one (&one, path, subject, cancel, error);
 }
 
 GPtrArray *
@@ -203,7 +213,7 @@ tf_laws_charts_write (const TfLawsCharts *charts, const char *folder, const char
       g_autofree char *name = g_strdup_printf ("%s.%s", chart->name, ending);
       char *path = g_build_filename (folder, name, NULL);
       g_ptr_array_add (written, path);
-      if (!write_one (&one, path, subject, error))
+      if (!write_one (&one, path, subject, NULL, error))
         return NULL;
     }
   return g_steal_pointer (&written);

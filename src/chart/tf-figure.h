@@ -36,6 +36,9 @@ typedef void (*TfFigureFunc) (cairo_t *cr, const TfChartStyle *style, TfArea are
 gboolean tf_figure_write (const char *path, const TfFigurePage *page, TfFigureFunc draw,
                           gpointer data, GError **error);
 
+/** tf_laws_chart_write: one chart as a file of that name. @cancel: (nullable) */
+gboolean tf_laws_chart_write (const TfLawsChart *chart, const TfLawsCharts *charts, const char *path,
+                              const char *subject, TfCancel *cancel, GError **error);
 /**
  * tf_laws_charts_write: every chart that has something to show, as FOLDER/NAME.ENDING.
  * @folder: made when it is not there

@@ -145,7 +145,7 @@ row_is_of (const TfChartRow *row, const TfHaleRow *bar)
          && (bar->hemisphere == 0 || row->side == bar->hemisphere);
 }
 
-/* On the red and its number those that break; where none does, those that cannot be said. */
+/* Those that break; where none does, those that cannot be said; else those that keep. */
 int
 tf_hale_bars_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
                   double y, int after)
@@ -155,7 +155,9 @@ tf_hale_bars_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea 
   if (charts->hale->len == 0 || !(place >= 0 && place < charts->hale->len) || charts->n == 0)
     return -1;
   const TfHaleRow *bar = &g_array_index (charts->hale, TfHaleRow, (guint)place);
-  gint8 wanted = bar->breaks > 0 ? TF_VERDICT_BREAKS : TF_VERDICT_CANNOT_SAY;
+  gint8 wanted = bar->breaks > 0       ? TF_VERDICT_BREAKS
+                 : bar->cannot_say > 0 ? TF_VERDICT_CANNOT_SAY
+                                       : TF_VERDICT_KEEPS;
   for (guint step = 1; step <= charts->n; step++)
     {
       guint k = (guint)((after < 0 ? -1 : after) + (int)step) % charts->n;
@@ -173,6 +175,29 @@ append_row (GString *text, const TfHaleRow *row)
   g_autofree char *high = tf_chart_dup_percent (row->clopper_pearson.high, 1);
   g_string_append_printf (text, _ ("%s: %s (%s to %s) of %u break, %u cannot be said. "), name,
                           share, low, high, row->n, row->cannot_say);
+}
+
+double *
+tf_hale_bars_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n)
+{
+  TfPlot plot = plot_of (charts, style, area);
+  double *xy = g_new (double, 2 * charts->hale->len + 2);
+  *n = charts->hale->len;
+  for (guint k = 0; k < *n; k++)
+    {
+      const TfHaleRow *row = &g_array_index (charts->hale, TfHaleRow, k);
+      xy[2 * k] = tf_plot_x (&plot, isfinite (row->share) ? fmin (row->share, plot.x1) : 0);
+      xy[2 * k + 1] = middle_of (charts, &plot, k);
+    }
+  return xy;
+}
+
+char *
+tf_hale_bars_dup_sign (const TfLawsCharts *charts, guint k)
+{
+  GString *text = g_string_new (NULL);
+  append_row (text, &g_array_index (charts->hale, TfHaleRow, k));
+  return g_strchomp (g_string_free (text, FALSE));
 }
 
 char *

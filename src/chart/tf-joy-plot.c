@@ -216,6 +216,19 @@ tf_joy_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea a
   return at < 0 ? -1 : (int)charts->tilts.row[at];
 }
 
+double *
+tf_joy_plot_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n)
+{
+  TfPlot plot = plot_of (charts, style, area);
+  return tf_laws_place_points (&charts->tilts, &plot, n);
+}
+
+char *
+tf_joy_plot_dup_sign (const TfLawsCharts *charts, guint k)
+{
+  return tf_laws_charts_dup_row (charts, charts->tilts.row[k]);
+}
+
 char *
 tf_joy_plot_dup_description (const TfLawsCharts *charts)
 {

@@ -22,13 +22,19 @@ typedef struct
   guint *row;
 } TfChartPoints;
 
-/* What the bars need of a row. */
+/* What bars and words need of a row. */
 typedef struct
 {
   gint8 kind; /* TfVerdictKind */
   gint8 cycle;
   gint8 side; /* 1, -1, 0 */
+  float lat, tilt, separation, year;
 } TfChartRow;
+
+typedef struct
+{
+  guint age, row;
+} TfChartSight;
 
 enum
 {
@@ -63,6 +69,7 @@ struct _TfLawsCharts
   TfEmergenceParams emergence;
   guint n_born;
   GArray *ages[TF_EMERGENCE_SIDES]; /* of TfEmergenceAge */
+  GArray *seen;                     /* TfChartSight: picks whose passage is seen at an age */
 
   TfWingsDot *dots;
   TfDivides *divides;
@@ -72,10 +79,16 @@ struct _TfLawsCharts
 /** tf_laws_fit_tilt: the tilt that the fit puts at |lat|, deg; @slope may be another one. */
 double tf_laws_fit_tilt (const TfLawsCharts *charts, double slope, double abs_lat_deg);
 
+/** tf_laws_place_points: places of a cloud; x NaN outside the plot. */
+double *tf_laws_place_points (const TfChartPoints *points, const TfPlot *plot, guint *n);
+
 void tf_hale_bars_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style,
                         TfArea area);
 int tf_hale_bars_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
                       double y, int after);
+double *tf_hale_bars_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                            guint *n);
+char *tf_hale_bars_dup_sign (const TfLawsCharts *charts, guint k);
 char *tf_hale_bars_dup_description (const TfLawsCharts *charts);
 double tf_hale_bars_height (const TfLawsCharts *charts, const TfChartStyle *style, double width);
 gboolean tf_hale_bars_has (const TfLawsCharts *charts);
@@ -84,6 +97,9 @@ void tf_joy_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartSty
                        TfArea area);
 int tf_joy_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
                      double y, int after);
+double *tf_joy_plot_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                            guint *n);
+char *tf_joy_plot_dup_sign (const TfLawsCharts *charts, guint k);
 char *tf_joy_plot_dup_description (const TfLawsCharts *charts);
 double tf_joy_plot_height (const TfLawsCharts *charts, const TfChartStyle *style, double width);
 gboolean tf_joy_plot_has (const TfLawsCharts *charts);
@@ -92,6 +108,9 @@ void tf_tilt_bars_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartSt
                         TfArea area);
 int tf_tilt_bars_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
                       double y, int after);
+double *tf_tilt_bars_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                            guint *n);
+char *tf_tilt_bars_dup_sign (const TfLawsCharts *charts, guint k);
 char *tf_tilt_bars_dup_description (const TfLawsCharts *charts);
 double tf_tilt_bars_height (const TfLawsCharts *charts, const TfChartStyle *style, double width);
 gboolean tf_tilt_bars_has (const TfLawsCharts *charts);
@@ -100,6 +119,9 @@ void tf_separation_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfC
                               TfArea area);
 int tf_separation_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
                             double x, double y, int after);
+double *tf_separation_plot_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                            guint *n);
+char *tf_separation_plot_dup_sign (const TfLawsCharts *charts, guint k);
 char *tf_separation_plot_dup_description (const TfLawsCharts *charts);
 double tf_separation_plot_height (const TfLawsCharts *charts, const TfChartStyle *style,
                                   double width);
@@ -109,6 +131,9 @@ void tf_emergence_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfCh
                              TfArea area);
 int tf_emergence_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
                            double x, double y, int after);
+double *tf_emergence_plot_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                            guint *n);
+char *tf_emergence_plot_dup_sign (const TfLawsCharts *charts, guint k);
 char *tf_emergence_plot_dup_description (const TfLawsCharts *charts);
 double tf_emergence_plot_height (const TfLawsCharts *charts, const TfChartStyle *style,
                                  double width);
@@ -119,6 +144,9 @@ void tf_wings_figure_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChar
                            TfArea area);
 int tf_wings_figure_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
                          double x, double y, int after);
+double *tf_wings_figure_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area,
+                            guint *n);
+char *tf_wings_figure_dup_sign (const TfLawsCharts *charts, guint k);
 char *tf_wings_figure_dup_description (const TfLawsCharts *charts);
 double tf_wings_figure_height (const TfLawsCharts *charts, const TfChartStyle *style, double width);
 gboolean tf_wings_figure_has (const TfLawsCharts *charts);

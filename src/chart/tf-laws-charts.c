@@ -4,6 +4,7 @@
 #include "tf-laws-charts.h"
 
 #include <math.h>
+#include <string.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
@@ -14,21 +15,32 @@
 #define TILT_STEP       5.0
 
 const TfLawsChart tf_laws_chart_table[] = {
-  { "hale", N_ ("Hale: share that breaks"), tf_hale_bars_draw, tf_hale_bars_hit,
+  { "hale", N_ ("Hale: share that breaks"), tf_hale_bars_draw, tf_hale_bars_hit, tf_hale_bars_dup_places, tf_hale_bars_dup_sign,
     tf_hale_bars_dup_description, tf_hale_bars_height, tf_hale_bars_has },
-  { "joy", N_ ("Joy: axis tilt against latitude"), tf_joy_plot_draw, tf_joy_plot_hit,
+  { "joy", N_ ("Joy: axis tilt against latitude"), tf_joy_plot_draw, tf_joy_plot_hit, tf_joy_plot_dup_places, tf_joy_plot_dup_sign,
     tf_joy_plot_dup_description, tf_joy_plot_height, tf_joy_plot_has },
-  { "tilts", N_ ("Axis tilts"), tf_tilt_bars_draw, tf_tilt_bars_hit, tf_tilt_bars_dup_description,
+  { "tilts", N_ ("Axis tilts"), tf_tilt_bars_draw, tf_tilt_bars_hit, tf_tilt_bars_dup_places, tf_tilt_bars_dup_sign,
+    tf_tilt_bars_dup_description,
     tf_tilt_bars_height, tf_tilt_bars_has },
   { "separation", N_ ("Scatter about Joy’s law against separation"), tf_separation_plot_draw,
-    tf_separation_plot_hit, tf_separation_plot_dup_description, tf_separation_plot_height,
+    tf_separation_plot_hit, tf_separation_plot_dup_places, tf_separation_plot_dup_sign,
+    tf_separation_plot_dup_description, tf_separation_plot_height,
     tf_separation_plot_has },
-  { "emergence", N_ ("Since emergence"), tf_emergence_plot_draw, tf_emergence_plot_hit,
+  { "emergence", N_ ("Since emergence"), tf_emergence_plot_draw, tf_emergence_plot_hit, tf_emergence_plot_dup_places, tf_emergence_plot_dup_sign,
     tf_emergence_plot_dup_description, tf_emergence_plot_height, tf_emergence_plot_has },
-  { "wings", N_ ("Wings of this study"), tf_wings_figure_draw, tf_wings_figure_hit,
+  { "wings", N_ ("Wings of this study"), tf_wings_figure_draw, tf_wings_figure_hit, tf_wings_figure_dup_places, tf_wings_figure_dup_sign,
     tf_wings_figure_dup_description, tf_wings_figure_height, tf_wings_figure_has },
   { NULL },
 };
+
+const TfLawsChart *
+tf_laws_chart_find (const char *name)
+{
+  for (const TfLawsChart *chart = tf_laws_chart_table; chart->name != NULL; chart++)
+    if (strcmp (chart->name, name) == 0)
+      return chart;
+  return NULL;
+}
 
 /* -- making ---------------------------------------------------------------------------------- */
 
@@ -101,8 +113,13 @@ take_row (TfLawsCharts *charts, const TfLawsFacts *facts, guint k, double *tilts
 {
   const TfSampleRow *row = tf_sample_get (facts->sample, k);
   const TfVerdict *verdict = &facts->verdicts[k];
-  charts->rows[k] = (TfChartRow){ (gint8)verdict->kind, (gint8)verdict->cycle.number,
-                                  row->lat_deg > 0 ? 1 : row->lat_deg < 0 ? -1 : 0 };
+  charts->rows[k] = (TfChartRow){ (gint8)verdict->kind,
+                                  (gint8)verdict->cycle.number,
+                                  row->lat_deg > 0 ? 1 : row->lat_deg < 0 ? -1 : 0,
+                                  (float)row->lat_deg,
+                                  (float)row->axis_tilt_deg,
+                                  (float)row->separation_deg,
+                                  (float)tf_time_year (row->time) };
   double tilt = row->axis_tilt_deg;
   if (isfinite (tilt))
     {
@@ -168,9 +185,29 @@ frame_separations (TfLawsCharts *charts)
   charts->separation_top = isfinite (top) ? CLAMP (ceil (top), 6, 20) : 12;
 }
 
+/* The pick of each passage stands for it. */
 static void
-take_emergence (TfLawsCharts *charts, const TfEmergence *emergence)
+take_sights (TfLawsCharts *charts, const TfEmergence *emergence, const TfSample *sample)
 {
+  g_autoptr (GHashTable) picks = g_hash_table_new (NULL, NULL);
+  for (guint k = 0; emergence->sights->len > 0 && k < charts->n; k++)
+    g_hash_table_insert (picks, GUINT_TO_POINTER (tf_sample_get (sample, k)->passage),
+                         GUINT_TO_POINTER (k + 1));
+  for (guint k = 0; k < emergence->sights->len; k++)
+    {
+      const TfEmergenceSight *sight = &g_array_index (emergence->sights, TfEmergenceSight, k);
+      guint row = GPOINTER_TO_UINT (
+          g_hash_table_lookup (picks, GUINT_TO_POINTER (sight->passage)));
+      const TfChartSight seen = { sight->age, row - 1 };
+      if (row > 0)
+        g_array_append_val (charts->seen, seen);
+    }
+}
+
+static void
+take_emergence (TfLawsCharts *charts, const TfEmergence *emergence, const TfSample *sample)
+{
+  charts->seen = g_array_new (FALSE, FALSE, sizeof (TfChartSight));
   for (int side = 0; side < TF_EMERGENCE_SIDES; side++)
     charts->ages[side] = emergence != NULL ? g_array_copy (emergence->ages[side])
                                            : g_array_new (FALSE, FALSE, sizeof (TfEmergenceAge));
@@ -178,6 +215,7 @@ take_emergence (TfLawsCharts *charts, const TfEmergence *emergence)
     return;
   charts->emergence = emergence->params;
   charts->n_born = emergence->passages;
+  take_sights (charts, emergence, sample);
 }
 
 static double
@@ -201,7 +239,7 @@ tf_laws_charts_new (const TfLawsFacts *facts)
   charts->all_relations = facts->all_relations;
   charts->fit = find_fit (facts);
   take_hale (charts, facts);
-  take_emergence (charts, facts->emergence);
+  take_emergence (charts, facts->emergence, facts->sample);
   tf_wings_figure_make (charts, facts);
   points_init (&charts->tilts, charts->n);
   points_init (&charts->residuals, charts->n);
@@ -253,6 +291,7 @@ charts_clear (gpointer data)
     }
   g_free (charts->rows);
   g_free (charts->dots);
+  g_array_unref (charts->seen);
   for (int side = 0; side < TF_EMERGENCE_SIDES; side++)
     g_array_unref (charts->ages[side]);
   g_array_unref (charts->lat_bins);
@@ -268,4 +307,77 @@ tf_laws_charts_unref (TfLawsCharts *charts)
 {
   if (charts != NULL)
     g_atomic_rc_box_release_full (charts, charts_clear);
+}
+
+/* -- signs, one after the other ----------------------------------------------------------------- */
+
+double *
+tf_laws_place_points (const TfChartPoints *points, const TfPlot *plot, guint *n)
+{
+  double *xy = g_new (double, 2 * points->n + 2);
+  for (guint k = 0; k < points->n; k++)
+    {
+      double x = points->xy[2 * k], y = points->xy[2 * k + 1];
+      gboolean inside = x >= plot->x0 && x <= plot->x1 && y >= plot->y0 && y <= plot->y1;
+      xy[2 * k] = inside ? tf_plot_x (plot, x) : NAN;
+      xy[2 * k + 1] = tf_plot_y (plot, y);
+    }
+  *n = points->n;
+  return xy;
+}
+
+/* How far along the direction, and across it: signs at one place along are taken in order across. */
+static void
+turn (TfStep step, double x, double y, double *along, double *across)
+{
+  gboolean flat = step == TF_STEP_LEFT || step == TF_STEP_RIGHT;
+  double sign = step == TF_STEP_LEFT || step == TF_STEP_UP ? -1 : 1;
+  *along = sign * (flat ? x : y);
+  *across = sign * (flat ? y : x);
+}
+
+static gboolean
+is_before (double along_a, double across_a, double along_b, double across_b)
+{
+  return along_a < along_b || (!(along_a > along_b) && across_a < across_b);
+}
+
+int
+tf_laws_step (const double *xy, guint n, TfStep step, double x, double y, double least)
+{
+  double from_along = -INFINITY, from_across = -INFINITY, best_along = INFINITY, best_across = 0;
+  int found = -1;
+  if (isfinite (x))
+    turn (step, x, y, &from_along, &from_across);
+  from_along += least;
+  for (guint k = 0; k < n; k++)
+    {
+      double along, across;
+      turn (step, xy[2 * k], xy[2 * k + 1], &along, &across);
+      if (isnan (xy[2 * k]) || !is_before (from_along, from_across, along, across)
+          || !is_before (along, across, best_along, best_across))
+        continue;
+      best_along = along;
+      best_across = across;
+      found = (int)k;
+    }
+  return found;
+}
+
+char *
+tf_laws_charts_dup_row (const TfLawsCharts *charts, guint row)
+{
+  static const char *const verdicts[]
+      = { N_ ("cannot be said"), N_ ("keeps Hale’s law"), N_ ("breaks Hale’s law") };
+  g_return_val_if_fail (charts != NULL && row < charts->n, NULL);
+  const TfChartRow *r = &charts->rows[row];
+  GString *text = g_string_new (NULL);
+  g_string_append_printf (text, _ ("%.2f, latitude %+.1f°"), (double)r->year, (double)r->lat);
+  if (isfinite (r->tilt))
+    g_string_append_printf (text, _ (", tilt %+.1f°"), (double)r->tilt);
+  if (isfinite (r->separation))
+    g_string_append_printf (text, _ (", separation %.1f°"), (double)r->separation);
+  if (r->cycle > 0 && !charts->wings.plain)
+    g_string_append_printf (text, _ (", cycle %d, %s"), r->cycle, _ (verdicts[r->kind]));
+  return g_string_free (text, FALSE);
 }

@@ -56,6 +56,10 @@ typedef struct
    * next after @after, round the end; -1 begins. */
   int (*hit) (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
               double y, int after);
+  /** dup_places: (transfer full): x, y in turn of every sign (a dot, a bar, a median); x NaN: it lies
+   * outside the frame. dup_sign: (transfer full): what sign @k says, in words. */
+  double *(*dup_places) (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n);
+  char *(*dup_sign) (const TfLawsCharts *charts, guint k);
   /** dup_description: (transfer full): what it shows now, in words. */
   char *(*dup_description) (const TfLawsCharts *charts);
   /** height: units that suit a width. */
@@ -64,8 +68,28 @@ typedef struct
   gboolean (*has) (const TfLawsCharts *charts);
 } TfLawsChart;
 
+typedef enum
+{
+  TF_STEP_LEFT,
+  TF_STEP_RIGHT,
+  TF_STEP_UP,
+  TF_STEP_DOWN,
+} TfStep;
+/**
+ * tf_laws_step: the next sign from a place, by keys: along one direction, so that every sign is met.
+ * @xy, @n: as dup_places gives them
+ * @x: a place; NaN: before all
+ * @least: units at least; 0: the very next
+ * Returns: the sign, or -1: there is none that way
+ */
+int tf_laws_step (const double *xy, guint n, TfStep step, double x, double y, double least);
+/** tf_laws_charts_dup_row: (transfer full): a row of the sample in words. */
+char *tf_laws_charts_dup_row (const TfLawsCharts *charts, guint row);
+
 /** tf_laws_chart_table: ends with name NULL. */
 extern const TfLawsChart tf_laws_chart_table[];
+/** tf_laws_chart_find: by name; NULL. */
+const TfLawsChart *tf_laws_chart_find (const char *name);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfLawsCharts, tf_laws_charts_unref)
 

@@ -108,6 +108,19 @@ tf_separation_plot_hit (const TfLawsCharts *charts, const TfChartStyle *style, T
   return at < 0 ? -1 : (int)charts->residuals.row[at];
 }
 
+double *
+tf_separation_plot_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n)
+{
+  TfPlot plot = plot_of (charts, style, area);
+  return tf_laws_place_points (&charts->residuals, &plot, n);
+}
+
+char *
+tf_separation_plot_dup_sign (const TfLawsCharts *charts, guint k)
+{
+  return tf_laws_charts_dup_row (charts, charts->residuals.row[k]);
+}
+
 char *
 tf_separation_plot_dup_description (const TfLawsCharts *charts)
 {

@@ -17,6 +17,12 @@ count_of (const TfLawsCharts *charts, guint bin)
          + charts->tilt_counts[TF_VERDICT_BREAKS][bin];
 }
 
+static guint
+bin_of (float tilt)
+{
+  return (guint)CLAMP ((int)floor (((double)tilt + 90) * TF_TILT_BINS / 180.0), 0, TF_TILT_BINS - 1);
+}
+
 static TfPlot
 plot_of (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area)
 {
@@ -116,7 +122,7 @@ tf_tilt_bars_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *
   cairo_restore (cr);
 }
 
-/* A bar holds many: none of them is meant before the others. */
+/* A bar holds many: one after the other, on its red those that break first. */
 int
 tf_tilt_bars_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, double x,
                   double y, int after)
@@ -125,19 +131,41 @@ tf_tilt_bars_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfArea 
   double tilt = tf_plot_back_x (&plot, x);
   if (!(tilt >= -90 && tilt < 90) || y < plot.plot.y || y > plot.plot.y + plot.plot.height)
     return -1;
-  double step = 180.0 / TF_TILT_BINS, from = floor (tilt / step) * step;
-  int first = -1;
-  for (guint k = 0; k < charts->tilts.n; k++)
+  guint bin = (guint)((tilt + 90) / 180.0 * TF_TILT_BINS);
+  gboolean red = y > tf_plot_y (&plot, charts->tilt_counts[TF_VERDICT_BREAKS][bin]);
+  for (guint step = 1; step <= charts->n; step++)
     {
-      double other = charts->tilts.xy[2 * k + 1];
-      if (!(other >= from && other < from + step))
-        continue;
-      int row = (int)charts->tilts.row[k];
-      if (row > after)
-        return row;
-      first = first < 0 ? row : first;
+      guint k = (guint)((after < 0 ? -1 : after) + (int)step) % charts->n;
+      const TfChartRow *row = &charts->rows[k];
+      if (isfinite (row->tilt) && bin_of (row->tilt) == bin
+          && (!red || row->kind == TF_VERDICT_BREAKS))
+        return (int)k;
     }
-  return first;
+  return -1;
+}
+
+double *
+tf_tilt_bars_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n)
+{
+  TfPlot plot = plot_of (charts, style, area);
+  double *xy = g_new (double, 2 * TF_TILT_BINS);
+  *n = TF_TILT_BINS;
+  for (guint k = 0; k < *n; k++)
+    {
+      guint count = count_of (charts, k);
+      xy[2 * k] = count > 0 ? tf_plot_x (&plot, -90 + (k + 0.5) * 180.0 / TF_TILT_BINS) : NAN;
+      xy[2 * k + 1] = fmax (tf_plot_y (&plot, count), plot.plot.y);
+    }
+  return xy;
+}
+
+char *
+tf_tilt_bars_dup_sign (const TfLawsCharts *charts, guint k)
+{
+  double from = -90 + k * 180.0 / TF_TILT_BINS;
+  return g_strdup_printf (_ ("tilts %.0f° to %.0f°: %u regions, of which %u break Hale’s law"), from,
+                          from + 180.0 / TF_TILT_BINS, count_of (charts, k),
+                          charts->tilt_counts[TF_VERDICT_BREAKS][k]);
 }
 
 char *

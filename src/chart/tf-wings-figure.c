@@ -9,6 +9,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-laws-charts-private.h"
+#include "tf-wings-private.h"
 
 void
 tf_wings_figure_make (TfLawsCharts *charts, const TfLawsFacts *facts)
@@ -60,6 +61,28 @@ tf_wings_figure_hit (const TfLawsCharts *charts, const TfChartStyle *style, TfAr
   upper.height = MAX (area.height - style->text_pt * 2.6, style->text_pt * 4);
   int at = tf_wings_hit (&charts->wings, style, upper, x, y);
   return at < 0 ? -1 : (int)charts->dots[at].id - 1;
+}
+
+double *
+tf_wings_figure_dup_places (const TfLawsCharts *charts, const TfChartStyle *style, TfArea area, guint *n)
+{
+  TfArea upper = area;
+  upper.height = MAX (area.height - style->text_pt * 2.6, style->text_pt * 4);
+  TfArea plot = tf_wings_plot (&charts->wings, style, upper);
+  double *xy = g_new (double, 2 * charts->wings.n + 2);
+  *n = charts->wings.n;
+  for (guint k = 0; k < *n; k++)
+    {
+      xy[2 * k] = tf_wings_x (&charts->wings, plot, charts->dots[k].year);
+      xy[2 * k + 1] = tf_wings_y (&charts->wings, plot, charts->dots[k].lat_deg);
+    }
+  return xy;
+}
+
+char *
+tf_wings_figure_dup_sign (const TfLawsCharts *charts, guint k)
+{
+  return tf_laws_charts_dup_row (charts, (guint)charts->dots[k].id - 1);
 }
 
 char *

@@ -16,7 +16,8 @@ typedef struct
 {
   int days, months;   /* one of them is 0 */
   const char *form;   /* for g_date_time_format */
-  const char *coarse; /* of the first label, and of one that begins what the others lie in */
+  const char *coarse; /* of the first label, and of the day that begins a year; where months are counted
+                         January is the year alone */
 } Step;
 
 static const Step steps[] = {
@@ -79,8 +80,9 @@ draw_tick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea 
   cairo_move_to (cr, floor (x) + 0.5, foot);
   cairo_line_to (cr, floor (x) + 0.5, foot + style->text_pt * 0.3);
   cairo_stroke (cr);
-  gboolean coarse = !*begun || (month == 1 && day == 1);
-  g_autofree char *label = dup_label (coarse ? step->coarse : step->form, year, month, day);
+  gboolean new_year = month == 1 && day == 1, coarse = !*begun || new_year;
+  const char *form = new_year && step->months > 0 ? "%Y" : coarse ? step->coarse : step->form;
+  g_autofree char *label = dup_label (form, year, month, day);
   *begun = TRUE;
   tf_chart_measure (cr, style, label, &width, NULL);
   double right = plot.x + plot.width + style->text_pt * 0.9;

@@ -14,6 +14,8 @@ void tf_window_update_laws_actions (TfWindow *window);
 /** tf_window_add_study_actions: commands of named studies and editions. */
 void tf_window_add_study_actions (TfWindow *window);
 void tf_window_update_study_actions (TfWindow *window);
+/** tf_window_add_chart_actions: charts as files; scales of instruments. */
+void tf_window_add_chart_actions (TfWindow *window);
 /** tf_study_menu_new: (transfer full): the studies there are, and what can be done with one. */
 GMenuModel *tf_study_menu_new (TfSession *session);
 

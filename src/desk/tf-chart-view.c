@@ -3,6 +3,7 @@
  */
 #include "tf-chart-view.h"
 
+#include <math.h>
 #include <adwaita.h>
 #include <glib/gi18n-lib.h>
 
@@ -17,7 +18,11 @@ struct _TfChartView
   int picture_scale;
   gboolean stale, drawing;
   int last; /* row opened last; -1 */
-  double x, y; /* of the cross */
+  double x, y; /* of the sign that the keys are at; x NaN: none */
+  int sign;
+  char *said;          /* what it says */
+  double *places;      /* of the signs, as the picture has them; NULL: to be asked for */
+  guint n_places;
 };
 
 G_DEFINE_FINAL_TYPE (TfChartView, tf_chart_view, GTK_TYPE_WIDGET)
@@ -25,7 +30,7 @@ G_DEFINE_FINAL_TYPE (TfChartView, tf_chart_view, GTK_TYPE_WIDGET)
 static const double label_share = 0.8;
 enum
 {
-  STEP = 12,
+  FAR = 40, /* units at least, with Shift */
   NATURAL_WIDTH = 380
 };
 
@@ -99,19 +104,37 @@ redraw (TfChartView *self)
   gtk_widget_queue_draw (GTK_WIDGET (self));
 }
 
+/* A ring about the sign, and what it says, where there is room. */
 static void
-snapshot_cross (TfChartView *self, GtkSnapshot *snapshot, int width, int height)
+snapshot_sign (TfChartView *self, GtkSnapshot *snapshot, int width, int height)
 {
   TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
+  double text = style.text_pt;
+  int w, h;
   graphene_rect_t all = GRAPHENE_RECT_INIT (0, 0, (float)width, (float)height);
   cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);
-  cairo_move_to (cr, self->x - STEP, self->y);
-  cairo_line_to (cr, self->x + STEP, self->y);
-  cairo_move_to (cr, self->x, self->y - STEP);
-  cairo_line_to (cr, self->x, self->y + STEP);
+  cairo_new_path (cr);
+  cairo_arc (cr, self->x, self->y, text * 0.8, 0, 2 * G_PI);
   tf_chart_set (cr, style.ink);
-  cairo_set_line_width (cr, 1.5);
+  cairo_set_line_width (cr, text * 0.16);
   cairo_stroke (cr);
+  if (self->said != NULL)
+    {
+      g_autoptr (PangoLayout) layout = gtk_widget_create_pango_layout (GTK_WIDGET (self), self->said);
+      pango_layout_set_width (layout, (int)(width - text * 2) * PANGO_SCALE);
+      pango_layout_get_pixel_size (layout, &w, &h);
+      double x = CLAMP (self->x - w / 2.0, text * 0.5, MAX (width - w - text * 0.5, text * 0.5));
+      double y = self->y > h + text * 2.4 ? self->y - h - text * 1.6 : self->y + text * 1.6;
+      cairo_rectangle (cr, x - text * 0.4, y - text * 0.2, w + text * 0.8, h + text * 0.4);
+      tf_chart_set (cr, style.ground);
+      cairo_fill_preserve (cr);
+      tf_chart_set (cr, style.slate);
+      cairo_set_line_width (cr, 1);
+      cairo_stroke (cr);
+      tf_chart_set (cr, style.ink);
+      cairo_move_to (cr, x, y);
+      pango_cairo_show_layout (cr, layout);
+    }
   cairo_destroy (cr);
 }
 
@@ -126,11 +149,50 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
     start_drawing (self);
   if (self->picture != NULL && self->charts != NULL)
     tf_surface_append (snapshot, widget, self->picture, 0, 0, self->picture_scale);
-  if (gtk_widget_has_visible_focus (widget) && self->x > 0)
-    snapshot_cross (self, snapshot, width, height);
+  if (gtk_widget_has_focus (widget) && isfinite (self->x))
+    snapshot_sign (self, snapshot, width, height);
 }
 
 /* -- choosing -------------------------------------------------------------------------------- */
+
+static TfArea
+area_of (TfChartView *self)
+{
+  return (TfArea){ 0, 0, gtk_widget_get_width (GTK_WIDGET (self)),
+                   gtk_widget_get_height (GTK_WIDGET (self)) };
+}
+
+static void describe (TfChartView *self);
+
+/* The keys are at no sign any more: they stand elsewhere now, or are others. */
+static void
+leave_sign (TfChartView *self)
+{
+  g_clear_pointer (&self->places, g_free);
+  g_clear_pointer (&self->said, g_free);
+  self->x = self->y = NAN;
+  self->sign = -1;
+  self->last = -1;
+}
+
+static void
+step (TfChartView *self, TfStep step, double least)
+{
+  TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
+  if (self->places == NULL)
+    self->places = self->chart->dup_places (self->charts, &style, area_of (self), &self->n_places);
+  int found = tf_laws_step (self->places, self->n_places, step, self->x, self->y, least);
+  if (found < 0)
+    return;
+  self->sign = found;
+  self->x = self->places[2 * found];
+  self->y = self->places[2 * found + 1];
+  self->last = -1;
+  g_free (self->said);
+  self->said = self->chart->dup_sign (self->charts, (guint)found);
+  describe (self);
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+}
 
 static gboolean
 open_at (TfChartView *self, double x, double y)
@@ -138,9 +200,7 @@ open_at (TfChartView *self, double x, double y)
   if (self->charts == NULL || self->chart == NULL)
     return FALSE;
   TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), label_share);
-  TfArea area = { 0, 0, gtk_widget_get_width (GTK_WIDGET (self)),
-                  gtk_widget_get_height (GTK_WIDGET (self)) };
-  int row = self->chart->hit (self->charts, &style, area, x, y, self->last);
+  int row = self->chart->hit (self->charts, &style, area_of (self), x, y, self->last);
   if (row < 0)
     return FALSE;
   self->last = row;
@@ -155,43 +215,50 @@ pressed (GtkGestureClick *gesture, int n, double x, double y, TfChartView *self)
   open_at (self, x, y);
 }
 
+/* What is under the pointer, without a click. */
+static gboolean
+query_tooltip (GtkWidget *widget, int x, int y, gboolean keyboard, GtkTooltip *tooltip)
+{
+  TfChartView *self = TF_CHART_VIEW (widget);
+  if (keyboard || self->charts == NULL || self->chart == NULL || !self->chart->has (self->charts))
+    return FALSE;
+  TfChartStyle style = tf_widget_chart_style (widget, label_share);
+  int row = self->chart->hit (self->charts, &style, area_of (self), x, y, -1);
+  g_autofree char *words = row >= 0 ? tf_laws_charts_dup_row (self->charts, (guint)row) : NULL;
+  g_autofree char *text
+      = words != NULL ? g_strdup_printf (_ ("%s — a click opens it on Mark"), words) : NULL;
+  gtk_tooltip_set_text (tooltip, text);
+  return text != NULL;
+}
+
 static gboolean
 key_pressed (GtkEventControllerKey *keys, guint key, guint code, GdkModifierType state,
              TfChartView *self)
 {
-  double width = gtk_widget_get_width (GTK_WIDGET (self)),
-         height = gtk_widget_get_height (GTK_WIDGET (self));
-  double step = (state & GDK_SHIFT_MASK) != 0 ? 2 : STEP, dx = 0, dy = 0;
-  if (!(self->x > 0))
-    {
-      self->x = width / 2;
-      self->y = height / 2;
-    }
+  double least = (state & GDK_SHIFT_MASK) != 0 ? FAR : 0;
+  if (self->charts == NULL || self->chart == NULL || !self->chart->has (self->charts))
+    return FALSE;
   switch (key)
     {
     case GDK_KEY_Left:
-      dx = -step;
-      break;
+      step (self, TF_STEP_LEFT, least);
+      return TRUE;
     case GDK_KEY_Right:
-      dx = step;
-      break;
+      step (self, TF_STEP_RIGHT, least);
+      return TRUE;
     case GDK_KEY_Up:
-      dy = -step;
-      break;
+      step (self, TF_STEP_UP, least);
+      return TRUE;
     case GDK_KEY_Down:
-      dy = step;
-      break;
+      step (self, TF_STEP_DOWN, least);
+      return TRUE;
     case GDK_KEY_Return:
     case GDK_KEY_KP_Enter:
     case GDK_KEY_space:
-      return open_at (self, self->x, self->y);
+      return isfinite (self->x) && open_at (self, self->x, self->y);
     default:
       return FALSE;
     }
-  self->x = CLAMP (self->x + dx, 1, width);
-  self->y = CLAMP (self->y + dy, 1, height);
-  gtk_widget_queue_draw (GTK_WIDGET (self));
-  return TRUE;
 }
 
 /* -- the widget ------------------------------------------------------------------------------ */
@@ -209,9 +276,11 @@ describe (TfChartView *self)
     return;
   gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL,
                                   _ (self->chart->title), -1);
-  tf_widget_describe (GTK_WIDGET (self), self->charts != NULL
-                                             ? self->chart->dup_description (self->charts)
-                                             : g_strdup (_ ("Nothing is worked out yet.")));
+  g_autofree char *all = self->charts != NULL ? self->chart->dup_description (self->charts)
+                                              : g_strdup (_ ("Nothing is worked out yet."));
+  tf_widget_describe (GTK_WIDGET (self), self->said != NULL
+                                             ? g_strdup_printf (_ ("At %s. %s"), self->said, all)
+                                             : g_strdup (all));
 }
 
 void
@@ -221,7 +290,7 @@ tf_chart_view_set_chart (TfChartView *self, const TfLawsChart *chart)
   if (self->chart == chart)
     return;
   self->chart = chart;
-  self->last = -1;
+  leave_sign (self);
   g_clear_pointer (&self->picture, cairo_surface_destroy);
   describe (self);
   gtk_widget_queue_resize (GTK_WIDGET (self));
@@ -236,6 +305,7 @@ tf_chart_view_show (TfChartView *self, TfLawsCharts *charts)
     return;
   g_clear_pointer (&self->charts, tf_laws_charts_unref);
   self->charts = charts != NULL ? tf_laws_charts_ref (charts) : NULL;
+  leave_sign (self);
   describe (self);
   gtk_widget_queue_resize (GTK_WIDGET (self));
   redraw (self);
@@ -268,6 +338,7 @@ static void
 size_allocate (GtkWidget *widget, int width, int height, int baseline)
 {
   TF_CHART_VIEW (widget)->stale = TRUE;
+  leave_sign (TF_CHART_VIEW (widget));
 }
 
 static void
@@ -282,6 +353,7 @@ dispose (GObject *object)
   TfChartView *self = TF_CHART_VIEW (object);
   g_clear_pointer (&self->picture, cairo_surface_destroy);
   g_clear_pointer (&self->charts, tf_laws_charts_unref);
+  leave_sign (self);
   G_OBJECT_CLASS (tf_chart_view_parent_class)->dispose (object);
 }
 
@@ -294,6 +366,7 @@ tf_chart_view_class_init (TfChartViewClass *klass)
   widget->measure = measure;
   widget->get_request_mode = request_mode;
   widget->size_allocate = size_allocate;
+  widget->query_tooltip = query_tooltip;
   gtk_widget_class_set_css_name (widget, "chart");
   gtk_widget_class_set_accessible_role (widget, GTK_ACCESSIBLE_ROLE_IMG);
   g_signal_new ("row-chosen", TF_TYPE_CHART_VIEW, G_SIGNAL_RUN_LAST, 0, NULL, NULL, NULL,
@@ -303,7 +376,8 @@ tf_chart_view_class_init (TfChartViewClass *klass)
 static void
 tf_chart_view_init (TfChartView *self)
 {
-  self->last = -1;
+  leave_sign (self);
+  gtk_widget_set_has_tooltip (GTK_WIDGET (self), TRUE);
   gtk_widget_set_focusable (GTK_WIDGET (self), TRUE);
   GtkGesture *click = gtk_gesture_click_new ();
   g_signal_connect (click, "pressed", G_CALLBACK (pressed), self);

@@ -5,7 +5,7 @@
 
 /* TfChartView: one chart of a study. It is drawn off the main thread; what was drawn last stands
  * until the new picture is there. A click on a sign opens the region behind it; by keyboard arrows
- * move a cross and Return opens what is under it. */
+ * go from sign to sign (Shift: farther), which says what it is, and Return opens what is there. */
 
 #include <gtk/gtk.h>
 

@@ -33,6 +33,10 @@ struct _TfLawsBench
   GListStore *rows;
   GPtrArray *views; /* of TfChartView, in the order of the table; borrowed */
   TfChartView *large;
+  GtkBox *power_box;
+  TfPowerView *power;
+  GtkWidget *save_one;
+  GtkScrolledWindow *one_scrolled;
 };
 
 G_DEFINE_FINAL_TYPE (TfLawsBench, tf_laws_bench, GTK_TYPE_WIDGET)
@@ -93,7 +97,7 @@ show_page (TfLawsBench *self, const TfLawsAnswer *answer)
     page = answer->empty && !answer->study->sieve.with_hints ? "hints" : "nothing";
   if (answer != NULL && answer->trouble != NULL)
     adw_status_page_set_description (self->nothing, answer->trouble);
-  if (strcmp (page, "charts") == 0 && g_strcmp0 (now, "one") == 0)
+  if (g_strcmp0 (now, "power") == 0 || (strcmp (page, "charts") == 0 && g_strcmp0 (now, "one") == 0))
     return; /* one of them is enlarged */
   gtk_stack_set_visible_child_name (self->stack, page);
 }
@@ -162,6 +166,16 @@ laws_changed (TfLawsBench *self)
   show_page (self, answer);
 }
 
+/* Return on a row, or a double click: that choice becomes the study's, as a new edition. */
+static void
+what_if_activated (GtkListView *view, guint place, TfLawsBench *self)
+{
+  g_autoptr (TfWhatIfItem) item = g_list_model_get_item (G_LIST_MODEL (self->rows), place);
+  if (item != NULL)
+    gtk_widget_activate_action (GTK_WIDGET (self), "win.apply-what-if", "s",
+                                tf_what_if_item_get_name (item));
+}
+
 /* -- charts ---------------------------------------------------------------------------------- */
 
 static void
@@ -220,16 +234,27 @@ tf_laws_bench_enlarge (TfLawsBench *self, const char *name)
       gtk_stack_set_visible_child_name (self->stack, "charts");
       return TRUE;
     }
-  for (const TfLawsChart *chart = tf_laws_chart_table; chart->name != NULL; chart++)
-    if (strcmp (chart->name, name) == 0)
-      {
-        tf_chart_view_set_chart (self->large, chart);
-        gtk_label_set_label (self->one_title, _ (chart->title));
-        gtk_widget_set_visible (self->relations, strcmp (name, "joy") == 0);
-        gtk_stack_set_visible_child_name (self->stack, "one");
-        return TRUE;
-      }
-  return FALSE;
+  if (strcmp (name, "power") == 0)
+    {
+      gtk_stack_set_visible_child_name (self->stack, "power");
+      return TRUE;
+    }
+  const TfLawsChart *chart = tf_laws_chart_find (name);
+  if (chart == NULL)
+    return FALSE;
+  tf_chart_view_set_chart (self->large, chart);
+  gtk_adjustment_set_value (gtk_scrolled_window_get_vadjustment (self->one_scrolled), 0);
+  gtk_label_set_label (self->one_title, _ (chart->title));
+  gtk_actionable_set_action_target (GTK_ACTIONABLE (self->save_one), "(ss)", name, "");
+  gtk_widget_set_visible (self->relations, strcmp (name, "joy") == 0);
+  gtk_stack_set_visible_child_name (self->stack, "one");
+  return TRUE;
+}
+
+TfPowerView *
+tf_laws_bench_get_power (TfLawsBench *self)
+{
+  return self->power;
 }
 
 const char *
@@ -306,6 +331,9 @@ tf_laws_bench_class_init (TfLawsBenchClass *klass)
   gtk_widget_class_bind_template_child (widget, TfLawsBench, stack);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, charts);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, one);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, power_box);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, save_one);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, one_scrolled);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, one_title);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, relations);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, nothing);
@@ -326,10 +354,13 @@ tf_laws_bench_init (TfLawsBench *self)
   g_signal_connect_object (self->large, "row-chosen", G_CALLBACK (row_chosen), self, 0);
   gtk_widget_set_vexpand (GTK_WIDGET (self->large), TRUE);
   gtk_box_append (self->one, GTK_WIDGET (self->large));
+  self->power = TF_POWER_VIEW (tf_power_view_new ());
+  gtk_box_append (self->power_box, GTK_WIDGET (self->power));
   self->rows = g_list_store_new (TF_TYPE_WHAT_IF_ITEM);
   g_autoptr (GtkNoSelection) model
       = gtk_no_selection_new (g_object_ref (G_LIST_MODEL (self->rows)));
   g_autoptr (GtkListItemFactory) factory = tf_what_if_factory_new ();
   gtk_list_view_set_model (self->what_if, GTK_SELECTION_MODEL (model));
   gtk_list_view_set_factory (self->what_if, factory);
+  g_signal_connect_object (self->what_if, "activate", G_CALLBACK (what_if_activated), self, 0);
 }

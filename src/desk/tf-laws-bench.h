@@ -6,6 +6,7 @@
 /* TfLawsBench: the study at the left, its charts in the middle, the numbers in words and what they
  * would be under other choices at the right. */
 
+#include "tf-power-view.h"
 #include "tf-session-laws.h"
 
 G_BEGIN_DECLS
@@ -18,5 +19,6 @@ void tf_laws_bench_set_session (TfLawsBench *bench, TfSession *session);
 gboolean tf_laws_bench_enlarge (TfLawsBench *bench, const char *name);
 /** tf_laws_bench_get_words: what stands under "In words" now. */
 const char *tf_laws_bench_get_words (TfLawsBench *bench);
+TfPowerView *tf_laws_bench_get_power (TfLawsBench *bench);
 
 G_END_DECLS

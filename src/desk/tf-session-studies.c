@@ -397,6 +397,18 @@ tf_session_put_away_study (TfSession *self)
   return TRUE;
 }
 
+gboolean
+tf_session_keep_scale (TfSession *self, const TfKeptScale *scale)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self) && scale != NULL, FALSE);
+  if (!may_keep (self))
+    return FALSE;
+  TfDeed *deed = tf_deed_new (TF_DEED_SCALE, self->person);
+  deed->scale = tf_kept_scale_copy (scale);
+  tf_session_push_deed (self, deed);
+  return TRUE;
+}
+
 /* -- files -------------------------------------------------------------------------------------- */
 
 static void

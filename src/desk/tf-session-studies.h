@@ -7,6 +7,7 @@
  * kept and compared. What is changed and not kept stays in the window under its name.
  * "laws-changed" tells of all of it. Main thread only. */
 
+#include "tf-ledger-scales.h"
 #include "tf-ledger-studies.h"
 #include "tf-session-laws.h"
 
@@ -38,6 +39,8 @@ gboolean tf_session_put_away_study (TfSession *session);
 void tf_session_open_study (TfSession *session, GFile *file);
 void tf_session_save_study (TfSession *session, GFile *file);
 
+/** tf_session_keep_scale: a deed: an instrument's scale. */
+gboolean tf_session_keep_scale (TfSession *session, const TfKeptScale *scale);
 /** tf_session_keep_edition: works it out off the main thread, then keeps study and edition as one deed. */
 void tf_session_keep_edition (TfSession *session, const char *name);
 /** tf_session_apply_what_if: takes a choice into the study and keeps it as a new edition. FALSE: the

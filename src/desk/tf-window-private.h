@@ -3,6 +3,7 @@
  */
 #pragma once
 
+#include "tf-power.h"
 #include "tf-window.h"
 
 G_BEGIN_DECLS
@@ -12,6 +13,8 @@ void tf_window_focus_plate (TfWindow *window);
 /** tf_window_show_bench: "mark", "laws"; FALSE: no such bench. */
 gboolean tf_window_show_bench (TfWindow *window, const char *name);
 void tf_window_enlarge_chart (TfWindow *window, const char *name);
+/** tf_window_dup_power: (nullable) (transfer full): the power curve as far as it is worked out. */
+TfPowerCurve *tf_window_dup_power (TfWindow *window, double *wanted);
 /** tf_window_get_wings_span: the years in view on the wings. */
 void tf_window_get_wings_span (TfWindow *window, double *from, double *to);
 /* tf-window-actions.c */

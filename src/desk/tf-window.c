@@ -108,6 +108,12 @@ tf_window_enlarge_chart (TfWindow *self, const char *name)
   tf_laws_bench_enlarge (self->laws, name);
 }
 
+TfPowerCurve *
+tf_window_dup_power (TfWindow *self, double *wanted)
+{
+  return tf_power_view_dup_curve (tf_laws_bench_get_power (self->laws), wanted);
+}
+
 void
 tf_window_get_wings_span (TfWindow *self, double *from, double *to)
 {
@@ -528,6 +534,7 @@ tf_window_init (TfWindow *self)
   tf_window_add_actions (self);
   tf_window_add_laws_actions (self);
   tf_window_add_study_actions (self);
+  tf_window_add_chart_actions (self);
   g_signal_connect_object (self->benches, "notify::visible-child", G_CALLBACK (bench_changed), self,
                            G_CONNECT_SWAPPED);
   tf_window_add_drop (self);

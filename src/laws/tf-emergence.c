@@ -53,6 +53,7 @@ typedef struct
   guint n_bins;
   Bin *bins;   /* [side][bin] */
   Cell *cells; /* the same, of the passage in hand */
+  GArray *sights; /* of the emergence */
 } Ages;
 
 /* Rows with a flux, a time and a place on the disk, by passage and time. */
@@ -140,12 +141,15 @@ add_marks (const Ages *ages, const guint *rows, guint n, double zero)
 
 /* The passage's means into the bins; the cells are empty again. */
 static void
-take_cells (const Ages *ages)
+take_cells (const Ages *ages, guint32 passage)
 {
   for (guint k = 0; k < TF_EMERGENCE_SIDES * ages->n_bins; k++)
     {
       Cell *cell = &ages->cells[k];
       Bin *bin = &ages->bins[k];
+      const TfEmergenceSight sight = { k, passage };
+      if (k < ages->n_bins && cell->marks > 0)
+        g_array_append_val (ages->sights, sight);
       bin->regions += cell->marks > 0;
       for (int q = 0; q < QUANTITIES; q++)
         {
@@ -167,7 +171,7 @@ take_passage (const Ages *ages, const guint *rows, guint n, gboolean *late)
   if (born == 0 || (born < 0 && *late))
     return FALSE;
   add_marks (ages, rows, n, zero);
-  take_cells (ages);
+  take_cells (ages, row_at (ages, rows, 0)->passage);
   return TRUE;
 }
 
@@ -227,7 +231,8 @@ tf_emergence_new (const TfSample *every, const TfEmergenceParams *params)
 {
   TfEmergence *emergence = g_new0 (TfEmergence, 1);
   emergence->params = *params;
-  Ages ages = { every, params, 0, NULL, NULL };
+  emergence->sights = g_array_new (FALSE, FALSE, sizeof (TfEmergenceSight));
+  Ages ages = { every, params, 0, NULL, NULL, emergence->sights };
   ages.n_bins = (guint)ceil ((params->before_days + params->after_days) / params->bin_days - 1e-9);
   guint n = TF_EMERGENCE_SIDES * ages.n_bins;
   g_autofree Bin *bins = g_new0 (Bin, n);
@@ -251,5 +256,7 @@ tf_emergence_free (TfEmergence *emergence)
 {
   for (int side = 0; emergence != NULL && side < TF_EMERGENCE_SIDES; side++)
     g_array_unref (emergence->ages[side]);
+  if (emergence != NULL)
+    g_array_unref (emergence->sights);
   g_free (emergence);
 }

@@ -52,6 +52,13 @@ typedef struct
   TfSpread tilt_deg, separation_deg, flux_mx;
 } TfEmergenceAge;
 
+/** TfEmergenceSight: that a passage was seen at an age: who stands behind a median. */
+typedef struct
+{
+  guint age; /* index into the ages */
+  guint32 passage;
+} TfEmergenceSight;
+
 typedef struct
 {
   TfEmergenceParams params;
@@ -61,6 +68,7 @@ typedef struct
   guint elsewhere;                  /* passages not born on the disk, or not known to be */
   guint unmeasured;                 /* passages without a flux or a time */
   GArray *ages[TF_EMERGENCE_SIDES]; /* of TfEmergenceAge, all of one length, in order of age */
+  GArray *sights;                   /* TfEmergenceSight, by passage */
 } TfEmergence;
 
 /** tf_emergence_new: @every: every mark, those of a passage in any order. */

@@ -5,11 +5,14 @@
 
 #include "test-desk-laws.h"
 
+#include <math.h>
 #include <string.h>
 
 #include "tf-check.h"
 #include "tf-condition-list.h"
 #include "tf-condition-row.h"
+#include "tf-power-run.h"
+#include "tf-power-view.h"
 #include "tf-session-studies.h"
 #include "tf-sieve.h"
 #include "test-desk.h"
@@ -276,6 +279,95 @@ pickers_say_what_they_were_given (void)
   g_object_unref (row);
 }
 
+/* -- power ------------------------------------------------------------------------------------- */
+
+static gboolean
+is_idle (gpointer view)
+{
+  return !tf_power_view_is_busy (view);
+}
+
+static guint
+count_points (TfPowerView *view)
+{
+  double wanted;
+  g_autoptr (TfPowerCurve) curve = tf_power_view_dup_curve (view, &wanted);
+  return curve != NULL ? curve->points->len : 0;
+}
+
+/* Worked out one number after the other it is the curve that `power` gives. */
+static void
+power_is_worked_out_and_stopped (void)
+{
+  if (!test_desk_has_display ())
+    return;
+  TfPowerView *view = TF_POWER_VIEW (g_object_ref_sink (tf_power_view_new ()));
+  g_assert_true (tf_power_view_set_option (view, "what", "share"));
+  g_assert_true (tf_power_view_set_option (view, "runs", "20"));
+  g_assert_true (tf_power_view_set_option (view, "most", "200"));
+  g_assert_false (tf_power_view_set_option (view, "most", "few"));
+  tf_power_view_start (view);
+  g_assert_true (tf_power_view_is_busy (view));
+  test_desk_wait ("the curve", is_idle, view);
+  double wanted;
+  g_autoptr (TfPowerCurve) curve = tf_power_view_dup_curve (view, &wanted);
+  TfPowerParams params;
+  tf_options_reset (tf_power_options, &params);
+  params.what = TF_POWER_SHARE;
+  params.runs = 20;
+  params.most = 200;
+  params.draws = 100;
+  g_autoptr (TfPowerCurve) whole = tf_power_run (&params, NULL, NULL);
+  g_assert_cmpuint (curve->points->len, ==, 3);
+  for (guint k = 0; k < 3; k++)
+    g_assert_cmpuint (g_array_index (curve->points, TfPowerPoint, k).found, ==,
+                      g_array_index (whole->points, TfPowerPoint, k).found);
+  g_assert_true (tf_power_view_set_option (view, "most", "1000000"));
+  tf_power_view_start (view);
+  tf_power_view_stop (view);
+  g_assert_false (tf_power_view_is_busy (view));
+  g_assert_cmpuint (count_points (view), <, 3);
+  g_object_unref (view);
+}
+
+/* -- keys on a chart ----------------------------------------------------------------------------- */
+
+/* Every dot of the Joy plot is met once from left to right, and opens its own region. */
+static void
+every_dot_is_met_by_keys (void)
+{
+  g_autofree char *path = test_desk_laws_ledger ("keys.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
+  wait_settled (session);
+  TfLawsCharts *charts = tf_session_get_laws (session)->charts;
+  TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
+  TfArea area = { 0, 0, 400, 400 };
+  for (const TfLawsChart *chart = tf_laws_chart_table; chart->name != NULL; chart++)
+    {
+      guint n, met = 0, there = 0;
+      g_autofree double *xy = chart->dup_places (charts, &style, area, &n);
+      double x = NAN, y = NAN;
+      for (guint k = 0; k < n; k++)
+        there += !isnan (xy[2 * k]);
+      for (int at = tf_laws_step (xy, n, TF_STEP_RIGHT, x, y, 0); at >= 0;
+           at = tf_laws_step (xy, n, TF_STEP_RIGHT, x, y, 0))
+        {
+          x = xy[2 * at];
+          y = xy[2 * at + 1];
+          met++;
+          g_autofree char *words = chart->dup_sign (charts, (guint)at);
+          g_assert_cmpuint (strlen (words), >, 8);
+          if (strcmp (chart->name, "emergence") != 0)
+            {
+              g_test_message ("%s: %s at %.1f, %.1f", chart->name, words, x, y);
+              g_assert_cmpint (chart->hit (charts, &style, area, x, y, -1), >=, 0);
+            }
+        }
+      g_assert_cmpuint (met, ==, there);
+      g_assert_true (met > 0 || strcmp (chart->name, "emergence") == 0);
+    }
+}
+
 void
 test_desk_add_studies (void)
 {
@@ -287,4 +379,6 @@ test_desk_add_studies (void)
   g_test_add_func ("/desk/studies/a-study-goes-through-a-file", a_study_goes_through_a_file);
   g_test_add_func ("/desk/studies/pickers-say-what-they-were-given",
                    pickers_say_what_they_were_given);
+  g_test_add_func ("/desk/studies/power-is-worked-out-and-stopped", power_is_worked_out_and_stopped);
+  g_test_add_func ("/desk/studies/every-dot-is-met-by-keys", every_dot_is_met_by_keys);
 }
