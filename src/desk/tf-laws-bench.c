@@ -10,6 +10,7 @@
 
 #include "tf-actions-laws.h"
 #include "tf-chart-view.h"
+#include "tf-dipole-table.h"
 #include "tf-laws-study.h"
 #include "tf-session-studies.h"
 #include "tf-what-if-list.h"
@@ -37,6 +38,8 @@ struct _TfLawsBench
   TfPowerView *power;
   GtkWidget *save_one;
   GtkScrolledWindow *one_scrolled;
+  GtkExpander *dipole;
+  GtkGrid *dipoles;
 };
 
 G_DEFINE_FINAL_TYPE (TfLawsBench, tf_laws_bench, GTK_TYPE_WIDGET)
@@ -77,6 +80,16 @@ show_what_if (TfLawsBench *self, const TfLawsAnswer *answer)
     g_list_store_remove_all (self->rows);
   else if (answer->findings->what_if->len > 0)
     tf_what_if_list_fill (self->rows, answer->findings->what_if);
+}
+
+/* Filled when it is looked at. */
+static void
+show_dipoles (TfLawsBench *self)
+{
+  TfLawsAnswer *answer = tf_session_get_laws (self->session);
+  gboolean moving = tf_session_get_divide (self->session)->in_hand;
+  if (gtk_expander_get_expanded (self->dipole) && !moving)
+    tf_dipole_table_fill (self->dipoles, answer != NULL ? answer->findings : NULL);
 }
 
 static void
@@ -163,6 +176,7 @@ laws_changed (TfLawsBench *self)
   show_cautions (self, answer);
   show_what_if (self, answer);
   show_charts (self, answer);
+  show_dipoles (self);
   show_page (self, answer);
 }
 
@@ -277,6 +291,8 @@ tf_laws_bench_set_session (TfLawsBench *self, TfSession *session)
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "points-changed", G_CALLBACK (show_stretch), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (self->dipole, "notify::expanded", G_CALLBACK (show_dipoles), self,
+                           G_CONNECT_SWAPPED);
   laws_changed (self);
 }
 
@@ -334,6 +350,8 @@ tf_laws_bench_class_init (TfLawsBenchClass *klass)
   gtk_widget_class_bind_template_child (widget, TfLawsBench, power_box);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, save_one);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, one_scrolled);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, dipole);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, dipoles);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, one_title);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, relations);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, nothing);
