@@ -119,6 +119,8 @@ def main():
     insert(db, "point", p_names, (point(k, r) for k, r in enumerate(regions)))
     db.execute("DELETE FROM pack")  # the points in blocks: made anew by who opens the ledger to write
     db.execute("INSERT INTO pack (id, data) SELECT DISTINCT (hint << 40) | (mark >> 8), NULL FROM point")
+    db.execute("DELETE FROM brief")  # what studies ask of marks, likewise
+    db.execute("INSERT INTO brief (id, data) SELECT DISTINCT (hint << 40) | (mark >> 6), NULL FROM point")
     db.commit()
     db.execute("PRAGMA wal_checkpoint(TRUNCATE)")
     db.close()
