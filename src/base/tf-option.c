@@ -89,8 +89,8 @@ read_value (const TfOption *option, const char *text, double *value, GError **er
     *value = (double)whole;
   if (good && *value >= option->min && *value <= option->max)
     return TRUE;
-  g_set_error (error, TF_OPTION_ERROR, TF_OPTION_ERROR_VALUE, _ ("--%s takes a number from %g to %g %s, not “%s”."),
-               option->name, option->min, option->max, option->unit, text);
+  g_set_error (error, TF_OPTION_ERROR, TF_OPTION_ERROR_VALUE, _ ("--%s takes a number from %g to %g%s%s, not “%s”."),
+               option->name, option->min, option->max, *option->unit != '\0' ? " " : "", option->unit, text);
   return FALSE;
 }
 

@@ -55,6 +55,8 @@ tf_batch_parse (GOptionContext *context, int *argc, char ***argv)
   g_autoptr (GError) error = NULL;
   if (g_option_context_parse (own, argc, argv, &error))
     return TRUE;
+  if (g_str_has_suffix (error->message, "."))
+    error->message[strlen (error->message) - 1] = '\0';
   g_autofree char *line = g_strdup_printf (_ ("%s: %s. See %s --help."), g_get_prgname (), error->message, g_get_prgname ());
   tf_batch_say (line);
   return FALSE;
@@ -91,6 +93,16 @@ tf_batch_print_json (JsonBuilder *builder)
 {
   g_autofree char *text = tf_json_dup_text (builder, TRUE);
   printf ("%s\n", text);
+}
+
+void
+tf_batch_build_texts (JsonBuilder *builder, const char *key, const GPtrArray *texts)
+{
+  json_builder_set_member_name (builder, key);
+  json_builder_begin_array (builder);
+  for (guint k = 0; k < texts->len; k++)
+    json_builder_add_string_value (builder, g_ptr_array_index (texts, k));
+  json_builder_end_array (builder);
 }
 
 typedef struct

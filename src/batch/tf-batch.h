@@ -95,6 +95,9 @@ void tf_batch_say_error (const GError *error);
 /** tf_batch_print_json: the built document and a line end on standard output. */
 void tf_batch_print_json (JsonBuilder *builder);
 
+/** tf_batch_build_texts: a member that is an array of the texts. */
+void tf_batch_build_texts (JsonBuilder *builder, const char *key, const GPtrArray *texts);
+
 /** tf_batch_work: threads, pool and a cancel flag that Ctrl-C raises. */
 TfWork *tf_batch_work_new (guint threads);
 void tf_batch_work_free (TfWork *work);

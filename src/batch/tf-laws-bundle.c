@@ -10,16 +10,6 @@
 
 /* laws on a study bundle: worked out again, and held against the bundle's own numbers. */
 
-static void
-build_texts (JsonBuilder *builder, const char *key, const GPtrArray *texts)
-{
-  json_builder_set_member_name (builder, key);
-  json_builder_begin_array (builder);
-  for (guint k = 0; k < texts->len; k++)
-    json_builder_add_string_value (builder, g_ptr_array_index (texts, k));
-  json_builder_end_array (builder);
-}
-
 static JsonNode *
 build_said (const char *path, const TfBundle *bundle, const GPtrArray *differences,
             const GPtrArray *not_compared)
@@ -29,8 +19,8 @@ build_said (const char *path, const TfBundle *bundle, const GPtrArray *differenc
   tf_json_string (builder, "file", path);
   tf_json_string (builder, "written_by", bundle->program);
   tf_json_bool (builder, "same", differences->len == 0);
-  build_texts (builder, "differences", differences);
-  build_texts (builder, "not_compared", not_compared);
+  tf_batch_build_texts (builder, "differences", differences);
+  tf_batch_build_texts (builder, "not_compared", not_compared);
   json_builder_end_object (builder);
   return json_builder_get_root (builder);
 }

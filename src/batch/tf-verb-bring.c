@@ -72,16 +72,6 @@ say (const TfBrought *b, gboolean there, gboolean look)
 }
 
 static void
-build_texts (JsonBuilder *builder, const char *key, const GPtrArray *texts)
-{
-  json_builder_set_member_name (builder, key);
-  json_builder_begin_array (builder);
-  for (guint k = 0; k < texts->len; k++)
-    json_builder_add_string_value (builder, g_ptr_array_index (texts, k));
-  json_builder_end_array (builder);
-}
-
-static void
 build_table (JsonBuilder *builder, const TfOutsideTable *t)
 {
   tf_json_string (builder, "name", t->name);
@@ -105,9 +95,9 @@ print_json (const TfBrought *b, gboolean there)
   tf_json_int (builder, "regions", b->n_regions);
   tf_json_int (builder, "own_rows", b->n_own);
   tf_json_bool (builder, "there_already", there);
-  build_texts (builder, "columns_taken", b->taken);
-  build_texts (builder, "columns_not_taken", b->not_taken);
-  build_texts (builder, "said", b->said);
+  tf_batch_build_texts (builder, "columns_taken", b->taken);
+  tf_batch_build_texts (builder, "columns_not_taken", b->not_taken);
+  tf_batch_build_texts (builder, "said", b->said);
   json_builder_set_member_name (builder, "bad_rows");
   json_builder_begin_array (builder);
   for (guint k = 0; k < b->faults->len; k++)

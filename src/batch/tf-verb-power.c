@@ -64,6 +64,20 @@ print_curve (const TfPowerCurve *curve, const TfPowerParams *params)
     printf (_ ("About %.0f regions in each group are needed for a power of %.2f.\n"), ceil (needed), params->power);
 }
 
+/* NULL, or why the two numbers cannot be told apart by any number of regions. */
+static const char *
+find_fault (const TfPowerParams *p)
+{
+  gboolean share = p->what == TF_POWER_SHARE;
+  if (p->most < p->least)
+    return _ ("--least is more than --most.");
+  if (share && !((isnan (p->first) || (p->first >= 0 && p->first <= 1)) && (isnan (p->second) || (p->second >= 0 && p->second <= 1))))
+    return _ ("A share lies from 0 to 1.");
+  if (fabs (p->first - p->second) < 1e-9)
+    return _ ("--first and --second are the same: there is nothing to tell apart.");
+  return NULL;
+}
+
 int
 tf_verb_power (int argc, char **argv)
 {
@@ -81,8 +95,9 @@ tf_verb_power (int argc, char **argv)
   g_option_context_add_group (context, tf_options_new_group (tf_power_options, &params, "power", N_ ("the difference")));
   if (!tf_batch_parse (context, &argc, &argv))
     return TF_EXIT_CALL;
-  if (argc != 1 || params.most < params.least)
-    return tf_batch_usage ("power", _ ("Only options, and not more of the least than of the most."));
+  const char *fault = argc != 1 ? _ ("It takes options only.") : find_fault (&params);
+  if (fault != NULL)
+    return tf_batch_usage ("power", fault);
   g_autoptr (GError) error = NULL;
   g_autoptr (TfWork) work = tf_batch_work_new (0);
   g_autoptr (TfPowerCurve) curve = tf_power_run (&params, work, &error);

@@ -26,23 +26,13 @@ tf_brought_free (TfBrought *brought)
   g_free (brought);
 }
 
-static void
-clear_fault (gpointer data)
-{
-  TfFault *fault = data;
-  g_free (fault->column);
-  g_free (fault->value);
-  g_free (fault->reason);
-}
-
 static TfBrought *
 brought_new (void)
 {
   TfBrought *b = g_new0 (TfBrought, 1);
   b->entries = g_array_new (FALSE, TRUE, sizeof (TfOutsideEntry));
   g_array_set_clear_func (b->entries, (GDestroyNotify)tf_outside_entry_clear);
-  b->faults = g_array_new (FALSE, TRUE, sizeof (TfFault));
-  g_array_set_clear_func (b->faults, clear_fault);
+  b->faults = tf_faults_new ();
   b->taken = g_ptr_array_new_with_free_func (g_free);
   b->not_taken = g_ptr_array_new_with_free_func (g_free);
   b->said = g_ptr_array_new_with_free_func (g_free);

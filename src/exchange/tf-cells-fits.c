@@ -29,13 +29,17 @@ typedef struct
   int number;  /* in the file, from 1 */
   int type;    /* CFITSIO's */
   long width;  /* of a text */
-  char **cells; /* one a row */
+  char **cells; /* one a row, NULL where there is no value */
+  gsize n;      /* of them */
 } Column;
 
 static void
 clear_column (gpointer data)
 {
-  g_strfreev (((Column *)data)->cells);
+  Column *column = data;
+  for (gsize k = 0; k < column->n; k++)
+    g_free (column->cells[k]);
+  g_free (column->cells);
 }
 
 static gboolean
@@ -149,7 +153,8 @@ read_numbers (Source *s, Column *c)
 static void
 read_column (Source *s, Column *c)
 {
-  c->cells = g_new0 (char *, (gsize)s->rows + 1);
+  c->n = (gsize)s->rows;
+  c->cells = g_new0 (char *, c->n + 1);
   if (c->type == TSTRING)
     read_texts (s, c);
   else if (c->type == TLOGICAL)
@@ -185,7 +190,7 @@ list_columns (Source *s, TfCells *table, GArray *columns)
                            g_strdup_printf (_ ("%s: more than one value a row"), name));
           continue;
         }
-      Column column = { k, type, MAX (width, repeat), NULL };
+      Column column = { .number = k, .type = type, .width = MAX (width, repeat) };
       g_array_append_val (columns, column);
       g_autofree char *made = *name == '\0' ? g_strdup_printf ("col%d", k) : g_strdup (name);
       g_autofree char *clean = g_utf8_make_valid (made, -1), *clean_unit = g_utf8_make_valid (unit, -1);

@@ -31,6 +31,14 @@ clear_fault (gpointer data)
   g_free (fault->reason);
 }
 
+GArray *
+tf_faults_new (void)
+{
+  GArray *faults = g_array_new (FALSE, TRUE, sizeof (TfFault));
+  g_array_set_clear_func (faults, clear_fault);
+  return faults;
+}
+
 TfCells *
 tf_cells_new (const char *format, gboolean by_line)
 {
@@ -41,8 +49,7 @@ tf_cells_new (const char *format, gboolean by_line)
   g_array_set_clear_func (table->columns, clear_column);
   table->rows = g_ptr_array_new_with_free_func (g_free);
   table->places = g_array_new (FALSE, FALSE, sizeof (guint));
-  table->faults = g_array_new (FALSE, TRUE, sizeof (TfFault));
-  g_array_set_clear_func (table->faults, clear_fault);
+  table->faults = tf_faults_new ();
   table->not_read = g_ptr_array_new_with_free_func (g_free);
   table->about = g_string_new (NULL);
   table->texts = g_string_chunk_new (65536);

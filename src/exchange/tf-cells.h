@@ -26,6 +26,8 @@ typedef struct
   char *value;  /* as it stands there */
   char *reason; /* a sentence's part, in the current language */
 } TfFault;
+/** tf_faults_new: (element-type TfFault) */
+GArray *tf_faults_new (void);
 void tf_fault_add (GArray *faults, guint place, const char *column, const char *value,
                    const char *reason);
 

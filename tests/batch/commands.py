@@ -406,6 +406,8 @@ def _():
     curve = document("power", "--json", "--what", "share", "--first", "0.05", "--second", "0.3", "--least", "20", "--most", "160", "--runs", "40")
     powers = [point["power"] for point in curve["points"]]
     assert powers[-1] > 0.9 > powers[0] and 20 < curve["regions_needed"] < 160, curve
+    for words in (["--what", "share", "--first", "2"], ["--first", "0.3", "--second", "0.3"], ["--least", "90", "--most", "80"]):
+        assert call("power", *words, code=2).stderr.count("\n") == 1, words
 
 
 @test("pair offers a scale, keeps it only when told, and laws applies it only when told")
