@@ -33,7 +33,7 @@ ACTION (open_mark)
   gint64 mark;
   gboolean hint;
   g_variant_get (value, "(xb)", &mark, &hint);
-  tf_session_open_mark (session_of (window), mark, hint);
+  tf_session_choose_sighting (session_of (window), 0, (TfSight){ mark, hint });
   g_action_group_activate_action (G_ACTION_GROUP (window), "bench", g_variant_new_string ("mark"));
 }
 

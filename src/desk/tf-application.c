@@ -61,6 +61,9 @@ startup (GApplication *application)
   for (guint k = 0; k < G_N_ELEMENTS (accels); k++)
     gtk_application_set_accels_for_action (GTK_APPLICATION (application), accels[k].action,
                                            accels[k].keys);
+  const char *theme = g_getenv ("GTK_THEME"); /* drawings and colours of our own go with it */
+  if (theme != NULL && g_str_has_suffix (theme, "dark"))
+    adw_style_manager_set_color_scheme (adw_style_manager_get_default (), ADW_COLOR_SCHEME_FORCE_DARK);
   gtk_window_set_default_icon_name ("io.tiltfield.Tiltfield");
 }
 

@@ -194,7 +194,8 @@ draw_handles (TfPlate *self, cairo_t *cr)
     draw_handle (self, cr, self->corner);
 }
 
-/* The line of a proposed split, in what the hand is drawn in, with its name at its upper end. */
+/* The line of a proposed split, in what the hand is drawn in, with its name below its lower end:
+ * labels stand above outlines. */
 static void
 draw_proposal (TfPlate *self, cairo_t *cr)
 {
@@ -212,11 +213,11 @@ draw_proposal (TfPlate *self, cairo_t *cr)
   stroke_twice (cr);
   cairo_restore (cr);
   TfChartStyle style = tf_widget_chart_style (GTK_WIDGET (self), 0.9);
-  double x = ay < by ? ax : bx, y = fmin (ay, by) - 4;
+  double x = ay > by ? ax : bx, y = fmax (ay, by) + 4;
   for (int k = 0; k < 4; k++) /* a dark edge */
-    tf_chart_text (cr, &style, x + (k % 2 ? 1 : -1), y + (k / 2 ? 1 : -1), 0.5, 1,
+    tf_chart_text (cr, &style, x + (k % 2 ? 1 : -1), y + (k / 2 ? 1 : -1), 0.5, 0,
                    (TfColour){ 0.05, 0.06, 0.08, 0.75 }, _ ("split here? Shift+S"));
-  tf_chart_text (cr, &style, x, y, 0.5, 1, (TfColour){ 1.0, 0.945, 0.78, 1 },
+  tf_chart_text (cr, &style, x, y, 0.5, 0, (TfColour){ 1.0, 0.945, 0.78, 1 },
                  _ ("split here? Shift+S"));
 }
 

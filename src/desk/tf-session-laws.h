@@ -72,7 +72,5 @@ TfStretch tf_session_get_stretch (TfSession *session);
  * in view), "passage" (of the chosen region, else of the centre of the frame in view), "rotation"
  * (Carrington, of the frame in view), "cycle" (by its minima), "all". FALSE when there is no such. */
 gboolean tf_session_pick_named (TfSession *session, const char *name);
-/** tf_session_open_mark: its frame and itself are chosen; a hint when @hint. */
-void tf_session_open_mark (TfSession *session, gint64 mark, gboolean hint);
 
 G_END_DECLS

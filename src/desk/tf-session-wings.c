@@ -55,26 +55,24 @@ tf_session_set_show_hints (TfSession *self, gboolean show)
   tf_session_emit (self, TF_SIGNAL_POINTS);
 }
 
-void
-tf_session_open_mark (TfSession *self, gint64 mark, gboolean hint)
+/* The frame of a mark or hint, by the dots; 0. */
+static gint64
+frame_of (TfSession *self, TfSight sight)
 {
-  g_return_if_fail (TF_IS_SESSION (self));
   for (guint k = 0; k < self->points->len; k++)
     {
       const TfPoint *point = &g_array_index (self->points, TfPoint, k);
-      if (point->mark == mark && (point->hint != 0) == hint)
-        {
-          tf_session_choose_dot (self, (gint64)k + 1);
-          return;
-        }
+      if (!point->outside && point->mark == sight.mark && (point->hint != 0) == sight.is_hint)
+        return point->frame;
     }
+  return 0;
 }
 
 void
 tf_session_choose_sighting (TfSession *self, gint64 frame, TfSight sight)
 {
   g_return_if_fail (TF_IS_SESSION (self));
-  TfFrameItem *item = tf_session_find_frame (self, frame);
+  TfFrameItem *item = tf_session_find_frame (self, frame != 0 ? frame : frame_of (self, sight));
   if (item == NULL)
     return;
   tf_session_choose_frame (self, item);

@@ -405,7 +405,7 @@ GArray *tf_session_get_dots (TfSession *session, guint *n_hidden);
 guint tf_session_get_n_marks (TfSession *session);
 gboolean tf_session_get_show_hints (TfSession *session);
 void tf_session_set_show_hints (TfSession *session, gboolean show);
-/** tf_session_choose_sighting: that frame, with that mark or hint on it chosen (mark 0: none). */
+/** tf_session_choose_sighting: that frame (0: the one it lies on), with that mark or hint on it chosen (mark 0: none). */
 void tf_session_choose_sighting (TfSession *session, gint64 frame, TfSight sight);
 void tf_session_choose_dot (TfSession *session, gint64 id);
 /** tf_session_get_chosen_dot: 0: none */

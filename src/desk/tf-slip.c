@@ -80,12 +80,26 @@ show_joins (TfSlip *self)
     set_how (self->joins_how, self->joins, _ ("region"), text, tf_how_dup_joins ());
 }
 
-/* Before it is judged the proposal is what matters; a mark's class and note stay where they are. */
+/* Before it is judged the proposal matters more than the numbers of the whole; a mark's class and
+ * note stay where they are. */
+static void
+place_proposal (TfSlip *self, gboolean mark)
+{
+  GtkBox *into = mark ? self->page : GTK_BOX (self->numbers);
+  GtkWidget *now = gtk_widget_get_parent (self->proposal_box);
+  if (now == GTK_WIDGET (into))
+    return;
+  g_object_ref (self->proposal_box);
+  gtk_box_remove (GTK_BOX (now), self->proposal_box);
+  gtk_box_insert_child_after (into, self->proposal_box,
+                              mark ? self->judged : GTK_WIDGET (self->verdict_how));
+  g_object_unref (self->proposal_box);
+}
+
 static void
 show_proposal (TfSlip *self, gboolean mark)
 {
-  gtk_box_reorder_child_after (self->page, self->proposal_box,
-                               mark ? self->judged : GTK_WIDGET (self->also));
+  place_proposal (self, mark);
   const TfProposal *proposal = tf_session_get_proposal (self->session);
   TfUnits units = tf_session_get_units (self->session);
   gtk_widget_set_visible (self->proposal_box, proposal != NULL);

@@ -4,6 +4,7 @@
 #include "tf-widget-style.h"
 
 #include <adwaita.h>
+#include <string.h>
 
 double
 tf_widget_text_size (GtkWidget *widget)
@@ -16,12 +17,20 @@ tf_widget_text_size (GtkWidget *widget)
   return size > 0 ? size : 14;
 }
 
+/* libadwaita's own setting, or GTK's theme of that name asked for in the environment. */
+static gboolean
+wants_contrast (AdwStyleManager *manager)
+{
+  const char *theme = g_getenv ("GTK_THEME");
+  return adw_style_manager_get_high_contrast (manager)
+         || (theme != NULL && strstr (theme, ":hc") != NULL);
+}
+
 TfChartStyle
 tf_widget_chart_style (GtkWidget *widget, double share)
 {
   AdwStyleManager *manager = adw_style_manager_get_default ();
-  return tf_chart_style (adw_style_manager_get_dark (manager),
-                         adw_style_manager_get_high_contrast (manager),
+  return tf_chart_style (adw_style_manager_get_dark (manager), wants_contrast (manager),
                          tf_widget_text_size (widget) * share);
 }
 
