@@ -97,8 +97,9 @@ may_stretch (TfPlate *self, const TfView *view)
 static gboolean
 same_content (TfPlate *self)
 {
-  TfOutline *draft = tf_session_get_draft (self->session);
-  const TfMeasure *measure = draft != NULL ? tf_session_get_measure (self->session) : NULL;
+  gboolean stroke = tf_session_has_stroke (self->session);
+  const void *draft = stroke ? (const void *)self : tf_session_get_draft (self->session); /* in a stroke: whatever it is */
+  const TfMeasure *measure = draft != NULL && !stroke ? tf_session_get_measure (self->session) : NULL;
   const void *now[3] = { draft, tf_session_get_region (self->session), measure };
   gboolean same = TRUE;
   for (guint k = 0; k < G_N_ELEMENTS (now); k++)
@@ -138,7 +139,7 @@ tf_plate_draw_overlay (TfPlate *self, int width, int height)
   self->overlay = cairo_image_surface_create (CAIRO_FORMAT_ARGB32, (int)full_width * scale,
                                               (int)full_height * scale);
   g_auto (TfPlateOverlay) over = { 0 };
-  tf_plate_overlay_collect (&over, self->session, &self->overlay_view, TF_PLATE_MARGIN);
+  tf_plate_overlay_collect_still (&over, self->session, &self->overlay_view, TF_PLATE_MARGIN);
   TfChartStyle style = overlay_style (self);
   cairo_t *cr = cairo_create (self->overlay);
   cairo_scale (cr, scale, scale);
@@ -226,6 +227,16 @@ draw_preview (TfPlate *self, cairo_t *cr)
 
 typedef double Point[2];
 
+/* The draft that changes with every move, over the surface that does not. */
+static void
+draw_stroke (TfPlate *self, cairo_t *cr, int width, int height)
+{
+  g_auto (TfPlateOverlay) over = { 0 };
+  TfChartStyle style = overlay_style (self);
+  tf_plate_overlay_collect_stroke (&over, self->session);
+  tf_overlay_draw (cr, &over.overlay, &style, (TfArea){ 0, 0, width, height });
+}
+
 void
 tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
 {
@@ -233,6 +244,8 @@ tf_plate_draw_line (TfPlate *self, cairo_t *cr, int width, int height)
   guint n;
   TfFrame *frame = tf_session_get_frame (self->session);
   tf_session_get_line (self->session, &line, &n);
+  if (tf_session_has_stroke (self->session))
+    draw_stroke (self, cr, width, height);
   tf_plate_draw_hand (self, cr);
   if (tf_plate_has_preview (self))
     draw_preview (self, cr);

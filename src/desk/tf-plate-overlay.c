@@ -71,6 +71,12 @@ add_regions (TfPlateOverlay *over, TfSession *session)
       add_item (over, item, row->outline, tf_region_item_get_label (region),
                 tf_session_is_elsewhere (row) ? NULL : &row->measure);
     }
+}
+
+static void
+add_drafts (TfPlateOverlay *over, TfSession *session)
+{
+  TfOutline *draft = tf_session_get_draft (session);
   TfOverlayItem item = { .stroke = TF_STROKE_DRAFT,
                          .chosen = TRUE,
                          .verdict = (int)tf_session_get_verdict (session).kind };
@@ -145,14 +151,23 @@ tf_plate_overlay_init (TfPlateOverlay *over, const TfView *view, const TfGeometr
                                .on_dark = TRUE };
 }
 
-void
-tf_plate_overlay_collect (TfPlateOverlay *over, TfSession *session, const TfView *view,
-                          double shift)
+static void
+name_items (TfPlateOverlay *over)
+{
+  over->overlay.labels = TRUE; /* of the outlines that are drawn */
+  over->overlay.items = (const TfOverlayItem *)(gconstpointer)over->items->data;
+  over->overlay.n_items = over->items->len;
+}
+
+static void
+collect (TfPlateOverlay *over, TfSession *session, const TfView *view, double shift, gboolean without_drafts)
 {
   TfFrame *frame = tf_session_get_frame (session);
   g_return_if_fail (over != NULL && frame != NULL);
   tf_plate_overlay_init (over, view, tf_frame_get_geometry (frame), shift);
   add_regions (over, session);
+  if (!without_drafts)
+    add_drafts (over, session);
   add_ghosts (over, session);
   add_lines (over, session);
   set_limb (over);
@@ -161,11 +176,33 @@ tf_plate_overlay_collect (TfPlateOverlay *over, TfSession *session, const TfView
   overlay->graticule = tf_session_get_overlay (session, TF_OVERLAY_GRATICULE);
   overlay->outlines = tf_session_get_overlay (session, TF_OVERLAY_OUTLINES);
   overlay->axes = tf_session_get_overlay (session, TF_OVERLAY_AXES);
-  overlay->labels = TRUE; /* of the outlines that are drawn */
-  overlay->items = (const TfOverlayItem *)(gconstpointer)over->items->data;
-  overlay->n_items = over->items->len;
+  name_items (over);
   overlay->lines = (const TfOverlayLine *)(gconstpointer)over->lines->data;
   overlay->n_lines = over->lines->len;
+}
+
+void
+tf_plate_overlay_collect (TfPlateOverlay *over, TfSession *session, const TfView *view, double shift)
+{
+  collect (over, session, view, shift, FALSE);
+}
+
+void
+tf_plate_overlay_collect_still (TfPlateOverlay *over, TfSession *session, const TfView *view, double shift)
+{
+  collect (over, session, view, shift, tf_session_has_stroke (session));
+}
+
+void
+tf_plate_overlay_collect_stroke (TfPlateOverlay *over, TfSession *session)
+{
+  TfFrame *frame = tf_session_get_frame (session);
+  g_return_if_fail (over != NULL && frame != NULL);
+  tf_plate_overlay_init (over, tf_session_get_view (session), tf_frame_get_geometry (frame), 0);
+  add_drafts (over, session);
+  over->overlay.outlines = tf_session_get_overlay (session, TF_OVERLAY_OUTLINES);
+  over->overlay.axes = tf_session_get_overlay (session, TF_OVERLAY_AXES);
+  name_items (over);
 }
 
 void

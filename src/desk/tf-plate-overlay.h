@@ -28,6 +28,10 @@ void tf_plate_overlay_init (TfPlateOverlay *over, const TfView *view, const TfGe
  * ghosts; lines; as switched on. A frame must be open. */
 void tf_plate_overlay_collect (TfPlateOverlay *over, TfSession *session, const TfView *view,
                                double shift);
+/** tf_plate_overlay_collect_still: the same but for the draft while a stroke changes it with every move, which
+ * tf_plate_overlay_collect_stroke has alone. */
+void tf_plate_overlay_collect_still (TfPlateOverlay *over, TfSession *session, const TfView *view, double shift);
+void tf_plate_overlay_collect_stroke (TfPlateOverlay *over, TfSession *session);
 void tf_plate_overlay_set_poles (TfOverlayItem *item, const TfMeasure *measure);
 void tf_plate_overlay_clear (TfPlateOverlay *over);
 

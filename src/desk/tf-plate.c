@@ -177,7 +177,7 @@ choice_changed (TfPlate *self)
   TfTool tool = tf_session_get_tool (self->session);
   gtk_widget_set_cursor_from_name (GTK_WIDGET (self), tool == TF_TOOL_NONE ? NULL : "crosshair");
   self->has_corner = self->has_corner && tool == TF_TOOL_CORNERS;
-  if (tf_session_get_draft (self->session) != NULL)
+  if (tf_session_get_draft (self->session) != NULL && !tf_session_has_stroke (self->session))
     self->overlay_stale = TRUE; /* its poles move when it is measured again */
   describe (self);
   gtk_widget_queue_draw (GTK_WIDGET (self));
@@ -225,6 +225,7 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
   tf_surface_append (snapshot, widget, self->picture, 0, 0, scale);
   tf_surface_append (snapshot, widget, self->overlay, dx, dy, scale / stretch);
   if (line_n > 0 || tf_session_get_tool (self->session) != TF_TOOL_NONE
+      || tf_session_has_stroke (self->session)
       || tf_session_get_proposal (self->session) != NULL || tf_plate_has_preview (self))
     {
       cairo_t *cr = gtk_snapshot_append_cairo (snapshot, &all);

@@ -275,6 +275,12 @@ tf_session_brush_end (TfSession *self)
   tf_session_emit (self, TF_SIGNAL_CHOICE);
 }
 
+gboolean
+tf_session_has_stroke (TfSession *self)
+{
+  return self->brushing && self->draft != NULL;
+}
+
 /* -- split, leave out, pin --------------------------------------------------------------------- */
 
 TfOutline *

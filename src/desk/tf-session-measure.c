@@ -8,6 +8,7 @@
 
 #include "tf-session-private.h"
 
+#include <math.h>
 #include <glib/gi18n-lib.h>
 #include <time.h>
 
@@ -15,7 +16,8 @@ enum
 {
   MIN_VERTICES = 3
 };
-static const double quick_ms = 6; /* processor time */
+static const double quick_ms = 6;  /* processor time */
+static const double quick_px = 500; /* pixels across: what is larger is not even tried in the main thread */
 
 typedef struct
 {
@@ -194,12 +196,21 @@ order_measure (TfSession *self, TfOutline *outline, gboolean live)
   g_task_run_in_thread (task, measure_in_thread);
 }
 
+static gboolean
+is_quick (TfSession *self, const TfOutline *outline)
+{
+  double lon, lat, radius_deg, radius_px = tf_geometry_disk_radius (tf_frame_get_geometry (self->frame));
+  tf_outline_get_cap (outline, &lon, &lat, &radius_deg);
+  gboolean large = 2 * radius_px * sin (fmin (radius_deg, 90) * G_PI / 180) > quick_px; /* a map has no disk: not large */
+  return !self->slow && !large;
+}
+
 /* -- the line and the draft ------------------------------------------------------------------- */
 
 void
 tf_session_measure_live (TfSession *self, TfOutline *outline)
 {
-  if (!self->slow)
+  if (is_quick (self, outline))
     measure_now (self, outline);
   else if (!self->live_busy)
     {
@@ -271,7 +282,7 @@ tf_session_measure_split (TfSession *self, TfVertex a, TfVertex b)
 void
 tf_session_measure_draft (TfSession *self)
 {
-  if (!self->slow)
+  if (is_quick (self, self->draft))
     measure_now (self, self->draft);
   else
     {

@@ -254,6 +254,8 @@ void tf_session_set_brush (TfSession *session, double radius_deg);
 void tf_session_brush_begin (TfSession *session, double lon_deg, double lat_deg);
 void tf_session_brush_to (TfSession *session, double lon_deg, double lat_deg);
 void tf_session_brush_end (TfSession *session);
+/** tf_session_has_stroke: the brush or a corner is in the hand: the draft changes with every move. */
+gboolean tf_session_has_stroke (TfSession *session);
 /** tf_session_get_other_half: (nullable): the second half of a split in hand, with its measure */
 TfOutline *tf_session_get_other_half (TfSession *session);
 const TfMeasure *tf_session_get_other_measure (TfSession *session);

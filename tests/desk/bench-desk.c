@@ -165,12 +165,13 @@ static void
 brush (TfWindow *window)
 {
   TfSession *session = tf_window_get_session (window);
+  double middle = tf_geometry_central_carrington (tf_frame_get_geometry (tf_session_get_frame (session)));
   tf_session_choose_region (session, NULL);
   tf_session_step_hint (session, 1);
-  const TfMeasure *m = tf_session_get_measure (session);
+  turn (0.5);
   tf_session_set_tool (session, TF_TOOL_BRUSH_IN);
   tf_session_set_brush (session, 4);
-  tf_session_brush_begin (session, m->carrington_lon_deg, m->lat_deg);
+  tf_session_brush_begin (session, middle - 55, -40);
   measure (window, "brush over all", DO_BRUSH);
   tf_session_brush_end (session);
   guint n = 0;
