@@ -3,7 +3,7 @@
 # SPDX-FileCopyrightText: The Tiltfield developers
 """Compares where the pixels of every real header lie with astropy (wcslib) and sunpy on the same header.
 
-Usage: frame.py OUTSIDE-FRAME DATA. The observer is the header's own; where a header is not standard, what it means is
+Usage: frame.py OUTSIDE-FRAME SOURCE. The observer is the header's own; where a header is not standard, what it means is
 written here by hand from its own words, not taken from the program. Debian packages: python3-astropy, python3-sunpy,
 python3-numpy. Needs no network. Prints TAP.
 """
@@ -27,7 +27,8 @@ from astropy.time import Time
 from astropy.wcs import WCS
 from sunpy.coordinates import HeliographicCarrington, HeliographicStonyhurst, Helioprojective, get_earth
 
-PROGRAM, DATA = sys.argv[1], sys.argv[2]
+PROGRAM, TOP = sys.argv[1], sys.argv[2]
+DATA = os.environ.get("TF_SHARED_DATA", os.path.join(TOP, "..", "shared", "data"))
 AU = 149597870700.0
 ARCSEC = np.radians(1) / 3600
 count = 0

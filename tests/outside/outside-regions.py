@@ -1,7 +1,7 @@
 #!/usr/bin/python3
 # SPDX-License-Identifier: GPL-3.0-or-later
 # SPDX-FileCopyrightText: The Tiltfield developers
-"""outside-regions.py TILTFIELD_RUN SOURCE SHARED_DATA: other people's tables through the command
+"""outside-regions.py TILTFIELD_RUN SOURCE: other people's tables through the command
 line. Prints TAP.
 
 Tables written by astropy (python3-astropy 5.2: CSV, VOTable as TABLEDATA, BINARY and BINARY2, FITS)
@@ -22,7 +22,8 @@ import numpy as np
 from astropy.io.votable import from_table, writeto
 from astropy.table import Table
 
-RUN, TOP, DATA = sys.argv[1:4]
+RUN, TOP = sys.argv[1:3]
+DATA = os.environ.get("TF_SHARED_DATA", os.path.join(TOP, "..", "shared", "data"))
 number = 0
 work = tempfile.TemporaryDirectory(prefix="tiltfield-outside-")
 os.environ["XDG_STATE_HOME"] = os.path.join(work.name, "state")

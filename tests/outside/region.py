@@ -3,7 +3,7 @@
 # SPDX-FileCopyrightText: The Tiltfield developers
 """Measures regions anew from the same pixels, outline and floor with other people's libraries, and compares.
 
-Usage: region.py OUTSIDE-REGION DATA. Places by sunpy (Thompson 2006) from the header's numbers, pixel areas from the
+Usage: region.py OUTSIDE-REGION SOURCE. Places by sunpy (Thompson 2006) from the header's numbers, pixel areas from the
 sphere under each pixel's four corners, smoothing and labelling by scipy.ndimage, the noise by astropy.stats; flux,
 poles, tilt, separation and noise term by numpy from their definitions (3-science.md, "Measurement of a region").
 Debian packages: python3-numpy, python3-scipy, python3-astropy, python3-sunpy. Needs no network. Prints TAP.
@@ -31,7 +31,8 @@ from scipy.ndimage import gaussian_filter, label
 from scipy.special import erfc
 from sunpy.coordinates import HeliographicStonyhurst, Helioprojective
 
-PROGRAM, DATA = sys.argv[1], sys.argv[2]
+PROGRAM, TOP = sys.argv[1], sys.argv[2]
+DATA = os.environ.get("TF_SHARED_DATA", os.path.join(TOP, "..", "shared", "data"))
 TIME = "2014-02-03T04:05:06"
 count = 0
 
