@@ -167,9 +167,9 @@ words_of (TfTool tool)
       return _ ("Click the corners, or move with the arrow keys and press Space. Enter closes, "
                 "Ctrl+Z takes the last one back.");
     case TF_TOOL_BRUSH_IN:
-      return _ ("Brush in with the button held, or Space at the cross. [ and ] change its size.");
+      return _ ("Brush in with the button held, or Space at the cross. [ and ], or Ctrl and the wheel, change its size.");
     case TF_TOOL_BRUSH_OUT:
-      return _ ("Brush out with the button held, or Space at the cross. [ and ] change its size.");
+      return _ ("Brush out with the button held, or Space at the cross. [ and ], or Ctrl and the wheel, change its size.");
     case TF_TOOL_SPLIT:
       return _ ("Draw a line right across, or click its two ends.");
     case TF_TOOL_LEAVE_OUT:

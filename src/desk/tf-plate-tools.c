@@ -276,6 +276,13 @@ scrolled (GtkEventControllerScroll *scroll, double dx, double dy, TfPlate *self)
 {
   if (self->session == NULL)
     return FALSE;
+  GdkModifierType state
+      = gtk_event_controller_get_current_event_state (GTK_EVENT_CONTROLLER (scroll));
+  if (is_brushing (self) && (state & GDK_CONTROL_MASK) != 0)
+    {
+      tf_session_set_brush (self->session, tf_session_get_brush (self->session) * pow (wheel_factor, -dy));
+      return TRUE;
+    }
   double x = self->pointer_in ? self->pointer_x : gtk_widget_get_width (GTK_WIDGET (self)) / 2.0;
   double y = self->pointer_in ? self->pointer_y : gtk_widget_get_height (GTK_WIDGET (self)) / 2.0;
   tf_session_zoom (self->session, pow (wheel_factor, -dy), x, y);

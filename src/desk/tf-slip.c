@@ -392,6 +392,14 @@ facts_left (TfSlip *self)
   leave_facts (self);
 }
 
+/* With Return: the keys are the plate's again. */
+static void
+facts_entered (TfSlip *self)
+{
+  leave_facts (self);
+  gtk_widget_activate_action (GTK_WIDGET (self), "win.focus-plate", NULL);
+}
+
 static void
 show_note (TfSlip *self, TfRegionItem *region)
 {
@@ -606,6 +614,7 @@ tf_slip_class_init (TfSlipClass *klass)
   gtk_widget_class_bind_template_callback (widget, replaces_toggled);
   gtk_widget_class_bind_template_callback (widget, note_left);
   gtk_widget_class_bind_template_callback (widget, facts_left);
+  gtk_widget_class_bind_template_callback (widget, facts_entered);
   gtk_widget_class_bind_template_callback (widget, note_key);
 }
 

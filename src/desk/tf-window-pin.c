@@ -15,6 +15,8 @@ typedef struct
   double lon_deg, lat_deg;
 } Question;
 
+static const char reason_key[] = "tf-pin-reason";
+
 static void
 reason_changed (GtkEditable *entry, AdwMessageDialog *dialog)
 {
@@ -27,9 +29,11 @@ answered (AdwMessageDialog *dialog, const char *answer, Question *q)
 {
   TfSession *session = tf_window_get_session (q->window);
   g_autofree char *reason = g_strstrip (g_strdup (gtk_editable_get_text (GTK_EDITABLE (q->reason))));
-  if (strcmp (answer, "pin") == 0)
-    tf_session_pin_pole (session, gtk_check_button_get_active (GTK_CHECK_BUTTON (q->positive)) ? 1 : -1,
-                         q->lon_deg, q->lat_deg, reason);
+  if (strcmp (answer, "pin") != 0)
+    return;
+  g_object_set_data_full (G_OBJECT (q->window), reason_key, g_strdup (reason), g_free);
+  tf_session_pin_pole (session, gtk_check_button_get_active (GTK_CHECK_BUTTON (q->positive)) ? 1 : -1,
+                       q->lon_deg, q->lat_deg, reason);
 }
 
 static void
@@ -95,6 +99,9 @@ tf_window_ask_pin (TfWindow *self, double lon_deg, double lat_deg)
   adw_message_dialog_set_response_enabled (ADW_MESSAGE_DIALOG (dialog), "pin", FALSE);
   g_signal_connect (q->reason, "changed", G_CALLBACK (reason_changed), dialog);
   g_signal_connect_data (dialog, "response", G_CALLBACK (answered), q, question_free, 0);
+  const char *last = g_object_get_data (G_OBJECT (self), reason_key);
+  if (last != NULL) /* often the same again: Return takes it, typing replaces it */
+    gtk_editable_set_text (GTK_EDITABLE (q->reason), last);
   gtk_window_present (GTK_WINDOW (dialog));
-  gtk_widget_grab_focus (q->reason);
+  gtk_widget_grab_focus (q->reason); /* and selects it */
 }

@@ -244,6 +244,7 @@ def _(given):
                 w.type(words)
                 w.key("Return")
                 w.wait_value(name, ledger, f"SELECT {column} FROM marks", words)
+                w.wait("the keys to be the plate's again", lambda: w.focused_name() == "Plate")
             w.action("set-person", w.text("Jonas"))
             w.action("note", w.text("seen too"))
             w.wait_value("the note", ledger, "SELECT text FROM note", "seen too")
