@@ -538,7 +538,8 @@ static const struct
   { "choose-divide", "next-divide" },
   { "move-divide", "next-divide" },
   { "pick", "stretch" },
-  { "open-mark", NULL }, /* a dot of a chart */
+  { "open-mark", NULL },     /* a dot of a chart */
+  { "apply-what-if", NULL }, /* a row of the list */
   { "follow-choose", NULL },   /* the list of passages */
   { "follow-answer", NULL },   /* a button beside each offer */
   { "follow-beside", NULL },   /* a button beside each offer */

@@ -121,6 +121,7 @@ main (int argc, char **argv)
   test_desk_add_plate ();
   test_desk_add_roll ();
   test_desk_add_follow ();
+  test_desk_add_gaps ();
   test_desk_add_geometry ();
   test_desk_add_list ();
   test_desk_add_window ();

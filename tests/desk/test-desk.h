@@ -19,6 +19,7 @@ gboolean test_desk_has_display (void);
 
 void test_desk_add_words (void);
 void test_desk_add_follow (void);
+void test_desk_add_gaps (void);
 void test_desk_add_geometry (void);
 void test_desk_add_hand (void);
 void test_desk_add_keys (void);
