@@ -58,7 +58,8 @@ static void
 draw_bar (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, const TfHaleRow *row,
           double y, double height)
 {
-  double x = plot->plot.x, end = tf_plot_x (plot, isfinite (row->share) ? row->share : 0);
+  double share = isfinite (row->share) ? fmin (row->share, plot->x1) : 0;
+  double x = plot->plot.x, end = tf_plot_x (plot, share);
   tf_chart_set (cr, style->band);
   cairo_rectangle (cr, x, y - height / 2, plot->plot.width, height);
   cairo_fill (cr);
@@ -83,8 +84,8 @@ draw_bar (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, const TfHa
       cairo_line_to (cr, at, y + height / 2);
       cairo_stroke (cr);
     }
-  tf_plot_whisker_x (cr, plot, style, row->clopper_pearson.low,
-                     fmin (row->clopper_pearson.high, plot->x1), y, height * 0.28);
+  tf_plot_whisker_x (cr, plot, style, row->clopper_pearson.low, row->clopper_pearson.high, y,
+                     height * 0.28);
 }
 
 static void
@@ -113,7 +114,7 @@ draw_legend (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style,
   small.text_pt = style->text_pt * 0.86;
   g_autofree char *level = g_strdup_printf ("%.0f", 100 * charts->level);
   g_autofree char *first
-      = g_strdup_printf (_ ("whisker: Clopper–Pearson %s %% · ? cannot say"), level);
+      = g_strdup_printf (_ ("whisker: Clopper–Pearson %s %%, → goes on · ? cannot say"), level);
   y += tf_plot_note (cr, &small, area, y, first);
   y += tf_plot_note (cr, &small, area, y, _ ("under the bar: at least, at most (every ? keeps, breaks)"));
   tf_plot_note (cr, &small, area, y, _ ("tick: what errors of place alone would give"));

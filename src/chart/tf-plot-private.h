@@ -36,7 +36,7 @@ void tf_plot_draw_x (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style,
 void tf_plot_draw_y (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, double step,
                      TfTickForm form, const char *title);
 /** tf_plot_whisker_x, tf_plot_whisker_y: an interval with feet of @foot units; nothing where it is
- * NaN. Given in data. */
+ * NaN. Given in data. Along x an end past the axis is an arrow at the axis' end. */
 void tf_plot_whisker_x (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, double low,
                         double high, double y_units, double foot);
 void tf_plot_whisker_y (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, double x,

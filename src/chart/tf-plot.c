@@ -133,20 +133,28 @@ stroke_whisker (cairo_t *cr, const TfChartStyle *style)
   cairo_stroke (cr);
 }
 
+/* A foot; @beyond: the interval goes on past the axis: the head of an arrow that points @outward. */
+static void
+whisker_end_x (cairo_t *cr, double at, double y_units, double foot, gboolean beyond, int outward)
+{
+  double back = beyond ? outward * foot : 0;
+  cairo_move_to (cr, at - back, y_units - foot);
+  cairo_line_to (cr, at, y_units);
+  cairo_line_to (cr, at - back, y_units + foot);
+}
+
 void
 tf_plot_whisker_x (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, double low,
                    double high, double y_units, double foot)
 {
   if (!isfinite (low) || !isfinite (high))
     return;
-  double a = tf_plot_x (plot, low), b = tf_plot_x (plot, high);
+  double a = tf_plot_x (plot, fmax (low, plot->x0)), b = tf_plot_x (plot, fmin (high, plot->x1));
   cairo_new_path (cr);
   cairo_move_to (cr, a, y_units);
   cairo_line_to (cr, b, y_units);
-  cairo_move_to (cr, a, y_units - foot);
-  cairo_line_to (cr, a, y_units + foot);
-  cairo_move_to (cr, b, y_units - foot);
-  cairo_line_to (cr, b, y_units + foot);
+  whisker_end_x (cr, a, y_units, foot, low < plot->x0, -1);
+  whisker_end_x (cr, b, y_units, foot, high > plot->x1, 1);
   stroke_whisker (cr, style);
 }
 

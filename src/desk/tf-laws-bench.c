@@ -37,7 +37,8 @@ struct _TfLawsBench
   GtkBox *power_box;
   TfPowerView *power;
   GtkWidget *save_one;
-  GtkScrolledWindow *one_scrolled;
+  GtkScrolledWindow *charts_scrolled, *one_scrolled;
+  guint arranging; /* the charts are about to be put into other columns; 0: they are not */
   GtkExpander *dipole;
   GtkGrid *dipoles;
 };
@@ -239,6 +240,32 @@ add_chart (TfLawsBench *self, const TfLawsChart *chart)
   g_ptr_array_add (self->views, view);
 }
 
+/* Two charts side by side, or with little room for their text one below the other. */
+static gboolean
+arrange_charts (gpointer data)
+{
+  TfLawsBench *self = data;
+  GtkAdjustment *across = gtk_scrolled_window_get_hadjustment (self->charts_scrolled);
+  double text = tf_widget_chart_style (GTK_WIDGET (self->charts), 1).text_pt;
+  int columns = gtk_adjustment_get_page_size (across) < 2 * 20 * text ? 1 : 2, place = 0;
+  GtkLayoutManager *layout = gtk_widget_get_layout_manager (GTK_WIDGET (self->charts));
+  for (GtkWidget *box = gtk_widget_get_first_child (GTK_WIDGET (self->charts)); box != NULL;
+       box = gtk_widget_get_next_sibling (box), place++)
+    {
+      GtkLayoutChild *child = gtk_layout_manager_get_layout_child (layout, box);
+      g_object_set (child, "column", place % columns, "row", place / columns, NULL);
+    }
+  self->arranging = 0;
+  return G_SOURCE_REMOVE;
+}
+
+static void
+room_changed (TfLawsBench *self)
+{
+  if (self->arranging == 0)
+    self->arranging = g_idle_add (arrange_charts, self);
+}
+
 gboolean
 tf_laws_bench_enlarge (TfLawsBench *self, const char *name)
 {
@@ -318,6 +345,7 @@ static void
 dispose (GObject *object)
 {
   TfLawsBench *self = TF_LAWS_BENCH (object);
+  g_clear_handle_id (&self->arranging, g_source_remove);
   g_clear_pointer (&self->parts, gtk_widget_unparent);
   g_clear_pointer (&self->views, g_ptr_array_unref);
   g_clear_object (&self->rows);
@@ -346,6 +374,7 @@ tf_laws_bench_class_init (TfLawsBenchClass *klass)
   gtk_widget_class_bind_template_child (widget, TfLawsBench, all_times);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, stack);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, charts);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, charts_scrolled);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, one);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, power_box);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, save_one);
@@ -368,6 +397,8 @@ tf_laws_bench_init (TfLawsBench *self)
   self->views = g_ptr_array_new ();
   for (const TfLawsChart *chart = tf_laws_chart_table; chart->name != NULL; chart++)
     add_chart (self, chart);
+  g_signal_connect_object (gtk_scrolled_window_get_hadjustment (self->charts_scrolled),
+                           "notify::page-size", G_CALLBACK (room_changed), self, G_CONNECT_SWAPPED);
   self->large = TF_CHART_VIEW (tf_chart_view_new (&tf_laws_chart_table[0]));
   g_signal_connect_object (self->large, "row-chosen", G_CALLBACK (row_chosen), self, 0);
   gtk_widget_set_vexpand (GTK_WIDGET (self->large), TRUE);

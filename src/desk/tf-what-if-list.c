@@ -148,7 +148,7 @@ set_up (GtkSignalListItemFactory *factory, GtkListItem *row, gpointer data)
 {
   GtkWidget *all = gtk_box_new (GTK_ORIENTATION_VERTICAL, 1);
   GtkWidget *box = gtk_box_new (GTK_ORIENTATION_HORIZONTAL, 6), *effect = gtk_drawing_area_new ();
-  add_label (box, 0, 12);
+  add_label (box, 0, 7);
   add_label (box, 1, 6);
   add_label (box, 1, 5);
   gtk_drawing_area_set_content_height (GTK_DRAWING_AREA (effect), 8);

@@ -85,8 +85,9 @@ char *
 test_desk_laws_ledger (const char *name)
 {
   char *path = test_desk_path (name);
-  g_autoptr (TfLedger) ledger = tf_ledger_create (path, 'T', NULL);
-  g_assert_nonnull (ledger);
+  g_autoptr (GError) error = NULL;
+  g_autoptr (TfLedger) ledger = tf_ledger_create (path, 'T', &error);
+  g_assert_no_error (error);
   gint64 early = add_frame (ledger, "2008-06-01T00:00:00Z"),
          late = add_frame (ledger, "2013-06-01T00:00:00Z");
   for (int k = 0; k < 4; k++)

@@ -336,7 +336,7 @@ power_is_worked_out_and_stopped (void)
 static void
 every_dot_is_met_by_keys (void)
 {
-  g_autofree char *path = test_desk_laws_ledger ("keys.ledger");
+  g_autofree char *path = test_desk_laws_ledger ("stepped.ledger");
   g_autoptr (TfSession) session = test_desk_laws_session (path);
   wait_settled (session);
   TfLawsCharts *charts = tf_session_get_laws (session)->charts;

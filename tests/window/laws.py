@@ -64,7 +64,7 @@ def chosen_handle(w):
 @scenario("a divide is dragged: the share that is read changes with it, and back by undo")
 def _(given):
     with tempfile.TemporaryDirectory(prefix="tiltfield-laws-") as folder:
-        ledger = made(given, folder, 900)
+        ledger = made(given, folder, 3000)  # so many that some regions lie where the divide is moved
         with Window(given, [ledger]) as w:
             before = open_laws(w)
             w.action("choose-divide", w.glib.Variant("(ii)", (23, 1)))
