@@ -445,6 +445,7 @@ class Window:
         left, top, outer_width, outer_height = self.geometry(id)
         _, _, inner_width, inner_height = self.extents(self.frames()[-1])
         self.click(left + (outer_width - inner_width) // 2 + x + width / 2, top + (outer_height - inner_height) // 2 + y + height / 2)
+        self.xdotool("mousemove", "2", "2")  # where the dialog was, the pointer would raise a tooltip: a window, too
 
     def drag(self, points, button=1):
         """A hand that draws from point to point of the display; paced, since GTK takes one move a frame."""
