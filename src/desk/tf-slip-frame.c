@@ -7,12 +7,14 @@
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-how.h"
 #include "tf-slip-words.h"
 
 struct _TfSlipFrame
 {
   GtkWidget parent;
   GtkLabel *title, *facts, *next, *cautions, *repairs, *geometry, *elsewhere, *witness;
+  TfHow *facts_how;
   GtkWidget *repairs_box, *cautions_box, *geometry_box, *again;
   TfSession *session;
 };
@@ -69,6 +71,23 @@ dup_facts (const TfFrameRow *row, TfFrame *frame, TfUnits units)
   append_noise (text, frame, units);
   if (info->simulated)
     g_string_append (text, _ ("\nsimulated: an invented Sun"));
+  return g_string_free (text, FALSE);
+}
+
+/* How time, observer and noise were got. */
+static char *
+dup_how (const TfFrameInfo *info)
+{
+  GString *text = g_string_new (NULL);
+  g_string_append_printf (text, _ ("time: from %s"), info->time_source);
+  if (!tf_geometry_is_map (&info->geometry))
+    g_string_append_printf (text, _ ("\nobserver, B0, L0: %s; an observer the header gives is never "
+                                     "replaced by the Earth"),
+                            tf_observer_source_name (info->geometry.observer.source));
+  if (info->role == TF_ROLE_FIELD)
+    g_string_append (text, _ ("\nnoise: 1.4826 × the median absolute deviation of weak pixels, by "
+                              "rings of μ (on maps by bands of latitude), without the wide edges of "
+                              "plage; the header’s figure is not used"));
   return g_string_free (text, FALSE);
 }
 
@@ -159,6 +178,7 @@ show (TfSlipFrame *self)
 {
   TfFrameItem *item = tf_session_get_frame_item (self->session);
   TfFrame *frame = tf_session_get_frame (self->session);
+  gtk_widget_set_sensitive (GTK_WIDGET (self->facts_how), item != NULL);
   if (item == NULL)
     {
       gtk_label_set_label (self->title, _ ("No frame"));
@@ -174,6 +194,8 @@ show (TfSlipFrame *self)
   g_autofree char *facts = dup_facts (row, frame, tf_session_get_units (self->session));
   gtk_label_set_label (self->title, time != NULL ? time : _ ("time unknown"));
   gtk_label_set_label (self->facts, facts);
+  g_autofree char *how = dup_how (row->info);
+  tf_how_set (self->facts_how, _ ("frame"), facts, how);
   gtk_label_set_label (self->next, row->refusal != NULL ? row->refusal
                                    : frame != NULL      ? next_step (self)
                                                         : "");
@@ -211,10 +233,12 @@ tf_slip_frame_class_init (TfSlipFrameClass *klass)
 {
   GtkWidgetClass *widget = GTK_WIDGET_CLASS (klass);
   G_OBJECT_CLASS (klass)->dispose = dispose;
+  g_type_ensure (TF_TYPE_HOW);
   gtk_widget_class_set_layout_manager_type (widget, GTK_TYPE_BIN_LAYOUT);
   gtk_widget_class_set_template_from_resource (widget, "/io/tiltfield/Tiltfield/slip-frame.ui");
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, title);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, facts);
+  gtk_widget_class_bind_template_child (widget, TfSlipFrame, facts_how);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, next);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, geometry);
   gtk_widget_class_bind_template_child (widget, TfSlipFrame, witness);

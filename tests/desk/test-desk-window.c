@@ -6,8 +6,10 @@
 #include <math.h>
 
 #include "tf-dial-view.h"
+#include "tf-how.h"
 #include "tf-plate.h"
 #include "tf-roll.h"
+#include "tf-slip-frame.h"
 #include "tf-slip-row.h"
 #include "tf-slip.h"
 #include "tf-window.h"
@@ -200,6 +202,26 @@ find_widget (GtkWidget *widget, GType type)
 }
 
 static gboolean
+frame_tells_how (gpointer window)
+{
+  GtkWidget *how = find_widget (find_widget (window, TF_TYPE_SLIP_FRAME), TF_TYPE_HOW);
+  const char *text = tf_how_get_text (TF_HOW (how));
+  return text != NULL && strstr (text, "median absolute deviation") != NULL
+         && strstr (text, "observer, B0, L0: ") != NULL;
+}
+
+/* With no region chosen the slip tells of the frame, and how its figures were got. */
+static void
+frame_says_how (void)
+{
+  if (!test_desk_has_display ())
+    return;
+  TfWindow *window = window_on ("frame-how.ledger");
+  test_desk_wait ("the frame's figures to say how they were got", frame_tells_how, window);
+  gtk_window_destroy (GTK_WINDOW (window));
+}
+
+static gboolean
 has_mark (gpointer session)
 {
   TfRegionItem *item = tf_session_get_region (session);
@@ -361,4 +383,5 @@ test_desk_add_window (void)
   g_test_add_func ("/desk/window/a-ledger-is-known-by-its-ending-or-its-first-bytes",
                    ledger_by_name_or_bytes);
   g_test_add_func ("/desk/slip/every-number-says-how-it-was-got", slip_says_how);
+  g_test_add_func ("/desk/slip/the-frame-says-how-its-figures-were-got", frame_says_how);
 }
