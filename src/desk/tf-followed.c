@@ -90,6 +90,7 @@ tf_followed_set_now (TfFollowed *self, int look)
   if (spec_at (self, look) == NULL || look == self->now)
     return;
   self->now = look;
+  self->want_sight = (TfSight){ 0 }; /* a step is newer than what the last reading was asked to find */
   tf_followed_emit (self, TF_FOLLOWED_MOMENT);
 }
 
