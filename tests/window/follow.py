@@ -101,7 +101,13 @@ def join_again(w, ledger, whole):
 def confirm_return(w, ledger):
     before = w.value(ledger, REGIONS)
     w.wait_text(r"May (come back as|be the return of)")
-    w.press("Same region….*")
+    for _ in range(3):  # each reading makes the buttons anew, and a press on one that goes is lost
+        w.press("Same region….*")
+        try:
+            w.wait("a question", lambda: w.windows() != [w.id], 3)
+            break
+        except Failed:
+            continue
     answer(w, "the same place, two weeks behind the limb")
     w.wait_value("regions after the return is confirmed", ledger, REGIONS, before - 1)
     w.wait_text("The same region: ")
