@@ -208,6 +208,14 @@ sight_now (TfFollowed *self)
   return spec != NULL ? (TfSight){ spec->mark, spec->is_hint } : (TfSight){ 0 };
 }
 
+/* Asked of every reading, told of a change or not: a reading may see one before it is told. Who has
+ * chosen another passage leaves what is in view. */
+static TfSight
+sight_to_keep (TfFollowed *self)
+{
+  return self->want == tf_followed_get_chosen (self) ? sight_now (self) : (TfSight){ 0 };
+}
+
 static void
 take (TfFollowed *self, Reading *r)
 {
@@ -354,7 +362,7 @@ start_reading (TfFollowed *self)
   Reading *asked = g_new0 (Reading, 1);
   asked->serial = ++self->serial;
   asked->passage = self->want;
-  asked->sight = self->want_sight;
+  asked->sight = self->want_sight.mark != 0 ? self->want_sight : sight_to_keep (self);
   asked->now = self->now;
   asked->beside = self->want_beside;
   asked->writable = tf_session_is_writable (self->session);
@@ -368,8 +376,6 @@ static void
 ledger_changed (TfFollowed *self)
 {
   self->stale = TRUE;
-  if (self->want_sight.mark == 0)
-    self->want_sight = sight_now (self);
   if (self->active)
     start_reading (self);
 }

@@ -196,6 +196,29 @@ cut_and_undo (void)
   bench_clear (&bench);
 }
 
+/* Said elsewhere: the reading sees it and nobody has told the bench. */
+static void
+view_stays_with_its_outline (void)
+{
+  Bench bench = bench_new ("follow-elsewhere.ledger");
+  test_desk_wait ("every frame in", is_settled, &bench);
+  const TfPassageContent *content = tf_followed_get_content (bench.followed);
+  const TfRow *before = g_ptr_array_index (content->rows, 1), *after = g_ptr_array_index (content->rows, 2);
+  TfSight last = { before->mark, before->is_hint }, first = { after->mark, after->is_hint };
+  tf_followed_set_now_point (bench.followed, 2);
+  g_autoptr (TfLedger) ledger = tf_ledger_open (bench.path, NULL);
+  gint64 person = tf_ledger_person (ledger, "south desk", NULL);
+  g_assert_true (tf_ledger_cut (ledger, last, first, person, "another one", NULL));
+  bench.n_left = content->rows->len - 2;
+  tf_followed_set_beside (bench.followed, content->passage->id);
+  test_desk_wait ("the part that has the outline in view", has_left, &bench);
+  g_assert_cmpint (tf_passage_content_find (tf_followed_get_content (bench.followed), first), ==, 0);
+  g_autoptr (TfLookItem) look = g_list_model_get_item (tf_followed_get_looks (bench.followed),
+                                                       (guint)tf_followed_get_now (bench.followed));
+  g_assert_cmpint (tf_look_item_get_spec (look)->mark, ==, first.mark);
+  bench_clear (&bench);
+}
+
 static void
 taken_mark_follows_the_rule (void)
 {
@@ -365,5 +388,6 @@ test_desk_add_follow (void)
   g_test_add_func ("/desk/follow/a-passage-is-read-with-one-floor-and-co-rotates", passage_is_there);
   g_test_add_func ("/desk/follow/looks-fill-in-and-step-within-the-stretch", looks_fill_in_and_step);
   g_test_add_func ("/desk/follow/a-cut-is-a-deed-that-undo-takes-back", cut_and_undo);
+  g_test_add_func ("/desk/follow/the-view-stays-with-its-outline", view_stays_with_its_outline);
   g_test_add_func ("/desk/follow/the-taken-mark-follows-the-rule", taken_mark_follows_the_rule);
 }

@@ -70,16 +70,16 @@ def correct_by_hand(window):
 def menu_by_mouse_and_keys(window):
     x, y, width, height = window.on_screen(window.known("Plate"))
     window.click(x + width * 0.7, y + height * 0.4, 3)
-    window.wait("the menu by mouse", lambda: len(window.windows()) > 1)
+    window.wait("the menu by mouse", window.popups)
     window.key("c")  # the letter of copying the position
     window.wait_text(r"Carrington .*pixel")
-    window.wait("the menu to go", lambda: window.windows() == [window.id])
+    window.wait("the menu to go", lambda: not window.popups())
     if "chosen: 0" not in window.plate():
         raise Failed(f"the right button changed the choice: {window.plate()}")
     window.key("shift+F10")
-    window.wait("the menu by keyboard", lambda: len(window.windows()) > 1)
+    window.wait("the menu by keyboard", window.popups)
     window.key("Escape")
-    window.wait("the menu to go", lambda: window.windows() == [window.id])
+    window.wait("the menu to go", lambda: not window.popups())
     window.wait("the plate to have the keys again", lambda: window.focused_name() == "Plate")
 
 

@@ -373,6 +373,18 @@ class Window:
         return max(found, key=lambda id: self.geometry(id)[2] * self.geometry(id)[3]) if found else None
 
     def windows(self):
+        """The main window and its dialogs. What pops up above them (menus, and tooltips wherever the pointer rests) is not counted."""
+        return [id for id in self.surfaces() if not self.is_popup(id)]
+
+    def popups(self):
+        return [id for id in self.surfaces() if self.is_popup(id)]
+
+    def is_popup(self, id):
+        done = subprocess.run(["xprop", "-id", id, "_NET_WM_WINDOW_TYPE"], env=self.env, stdout=subprocess.PIPE,
+                              stderr=subprocess.DEVNULL, text=True)
+        return "NORMAL" not in done.stdout and "DIALOG" not in done.stdout
+
+    def surfaces(self):
         done = subprocess.run(["xdotool", "search", "--onlyvisible", "--pid", str(self.program.pid)], env=self.env,
                               stdout=subprocess.PIPE, stderr=subprocess.DEVNULL, text=True)
         return done.stdout.split()
@@ -445,7 +457,6 @@ class Window:
         left, top, outer_width, outer_height = self.geometry(id)
         _, _, inner_width, inner_height = self.extents(self.frames()[-1])
         self.click(left + (outer_width - inner_width) // 2 + x + width / 2, top + (outer_height - inner_height) // 2 + y + height / 2)
-        self.xdotool("mousemove", "2", "2")  # where the dialog was, the pointer would raise a tooltip: a window, too
 
     def drag(self, points, button=1):
         """A hand that draws from point to point of the display; paced, since GTK takes one move a frame."""
