@@ -6,6 +6,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-bring-private.h"
+#include "tf-json.h"
 #include "tf-number.h"
 #include "tf-unit.h"
 
@@ -136,6 +137,13 @@ read_value (const TfBroughtColumn *column, const char *cell, double *value)
              || (*value >= rint (*value) && *value <= rint (*value)));
 }
 
+/* A member for the time until the row's latitude is known. */
+static char *
+dup_sign_name (const char *name)
+{
+  return g_strconcat (name, " sign", NULL);
+}
+
 static char *
 take_number (const TfBroughtColumn *column, const char *cell, JsonObject *flat)
 {
@@ -155,7 +163,10 @@ take_number (const TfBroughtColumn *column, const char *cell, JsonObject *flat)
   value = wrap (rule->name, value);
   json_object_set_double_member (flat, rule->name, value);
   if (rule->sign == TF_SIGN_NORTH || rule->sign == TF_SIGN_SOUTH)
-    json_object_set_double_member (flat, "sign rule", rule->sign == TF_SIGN_NORTH ? -1 : 1);
+    {
+      g_autofree char *of_row = dup_sign_name (rule->name);
+      json_object_set_double_member (flat, of_row, rule->sign == TF_SIGN_NORTH ? -1 : 1);
+    }
   return NULL;
 }
 
@@ -176,26 +187,28 @@ tf_brought_column_take (const TfBroughtColumn *column, const char *cell, JsonObj
   return NULL;
 }
 
+/* Takes a tilt out, its sign turned to ours: "north" is positive where the leader is north of the follower,
+ * which is poleward in the north. NaN when it is not there. */
+static double
+steal_tilt (JsonObject *flat, const char *name)
+{
+  g_autofree char *of_row = dup_sign_name (name);
+  double tilt = tf_json_member_number (flat, name), sign = tf_json_member_number (flat, of_row);
+  json_object_remove_member (flat, name);
+  json_object_remove_member (flat, of_row);
+  if (isnan (sign))
+    return tilt;
+  return json_object_get_double_member (flat, "lat_deg") >= 0 ? sign * tilt : -sign * tilt;
+}
+
 /* gamma_M in (-180, 180] is the axis tilt gamma_G in (-90, 90] or its opposite direction (reference:
- * both have one axis). "north": positive where the leader is north of the follower, which is
- * poleward in the north. */
+ * both have one axis). */
 void
 tf_brought_fold_tilt (JsonObject *flat)
 {
-  if (json_object_has_member (flat, "polarity_tilt_deg"))
-    {
-      double tilt = json_object_get_double_member (flat, "polarity_tilt_deg");
-      double folded = tilt > 90 ? tilt - 180 : tilt <= -90 ? tilt + 180 : tilt;
-      json_object_remove_member (flat, "polarity_tilt_deg");
-      if (!json_object_has_member (flat, "axis_tilt_deg"))
-        json_object_set_double_member (flat, "axis_tilt_deg", folded);
-    }
-  if (json_object_has_member (flat, "sign rule"))
-    {
-      double sign = json_object_get_double_member (flat, "sign rule");
-      double side = json_object_get_double_member (flat, "lat_deg") >= 0 ? 1 : -1;
-      double tilt = json_object_get_double_member (flat, "axis_tilt_deg");
-      json_object_set_double_member (flat, "axis_tilt_deg", sign * side * tilt);
-      json_object_remove_member (flat, "sign rule");
-    }
+  double axis = steal_tilt (flat, "axis_tilt_deg"), polarity = steal_tilt (flat, "polarity_tilt_deg");
+  if (isnan (axis))
+    axis = polarity > 90 ? polarity - 180 : polarity <= -90 ? polarity + 180 : polarity;
+  if (!isnan (axis))
+    json_object_set_double_member (flat, "axis_tilt_deg", axis <= -90 ? axis + 180 : axis);
 }

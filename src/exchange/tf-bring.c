@@ -110,31 +110,33 @@ is_listed (const GPtrArray *texts, const char *name)
   return FALSE;
 }
 
-static char *
-plain (const char *name)
+/* Whether a word of our column begins as theirs does, or theirs as it does. */
+static gboolean
+is_like (const char *ours, const char *theirs)
 {
-  GString *text = g_string_new (NULL);
-  for (const char *p = name; *p != '\0'; p++)
-    if (g_ascii_isalnum (*p))
-      g_string_append_c (text, g_ascii_tolower (*p));
-  return g_string_free (text, FALSE);
+  g_auto (GStrv) words = g_strsplit (ours, "_", -1);
+  for (guint k = 0; words[k] != NULL; k++)
+    if (strlen (words[k]) > 2 && strcmp (words[k], "deg") != 0
+        && (g_str_has_prefix (theirs, words[k]) || g_str_has_prefix (words[k], theirs)))
+      return TRUE;
+  return FALSE;
 }
 
-/* One of our columns that this might be meant for; NULL. */
-static const char *
-looks_like (const char *name)
+/* Those of our columns that this might be meant for: "lat_deg, leading_lat_deg"; NULL. */
+static char *
+dup_likes (const char *name)
 {
-  g_autofree char *theirs = plain (name);
-  if (strlen (theirs) < 3)
+  enum { MOST = 4 };
+  g_autofree char *theirs = g_ascii_strdown (name, -1);
+  g_autoptr (GPtrArray) likes = g_ptr_array_new ();
+  for (const TfColumn *c = tf_columns; strlen (theirs) > 2 && c->name != NULL; c++)
+    if ((tf_column_is_brought (c->name) || strcmp (c->name, "polarity_tilt_deg") == 0) && likes->len < MOST
+        && is_like (c->name, theirs))
+      g_ptr_array_add (likes, (gpointer)c->name);
+  if (likes->len == 0)
     return NULL;
-  for (const TfColumn *c = tf_columns; c->name != NULL; c++)
-    {
-      g_autofree char *ours = plain (c->name);
-      if (tf_column_is_brought (c->name)
-          && (g_str_has_prefix (ours, theirs) || g_str_has_prefix (theirs, ours)))
-        return c->name;
-    }
-  return NULL;
+  g_ptr_array_add (likes, NULL);
+  return g_strjoinv (", ", (char **)likes->pdata);
 }
 
 static void
@@ -145,15 +147,15 @@ list_the_rest (TfBrought *b, const TfCells *table, const GArray *columns)
       const char *name = g_array_index (table->columns, TfCellsColumn, k).name;
       if (is_used (columns, k) || is_listed (b->not_taken, name))
         continue;
-      const char *like = looks_like (name);
+      g_autofree char *likes = dup_likes (name);
       gboolean judged = strcmp (name, "polarity_tilt_deg") == 0;
       for (const TfColumn *c = tf_columns; c->name != NULL; c++)
         judged |= strcmp (c->name, name) == 0 && !tf_column_is_brought (name);
       g_ptr_array_add (
           b->not_taken,
-          judged         ? g_strdup_printf (_ ("%s: judged here anew"), name)
-          : like != NULL ? g_strdup_printf (_ ("%s: not known; if it is %s, say so in a map"), name, like)
-                         : g_strdup_printf (_ ("%s: not known"), name));
+          judged          ? g_strdup_printf (_ ("%s: judged here anew"), name)
+          : likes != NULL ? g_strdup_printf (_ ("%s: not known; if one of these is meant, say so in a map: %s"), name, likes)
+                          : g_strdup_printf (_ ("%s: not known"), name));
     }
   for (guint k = 0; k < table->not_read->len; k++)
     g_ptr_array_add (b->not_taken, g_strdup (g_ptr_array_index (table->not_read, k)));

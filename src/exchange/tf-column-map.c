@@ -89,6 +89,12 @@ is_longitude (const char *name)
   return g_str_has_suffix (name, "lon_deg") || strcmp (name, "cmd_deg") == 0;
 }
 
+static gboolean
+is_tilt (const char *name)
+{
+  return strcmp (name, "axis_tilt_deg") == 0 || strcmp (name, "polarity_tilt_deg") == 0;
+}
+
 /* "positive X", "range R": NULL when it fits the column, else what is wrong. */
 static const char *
 read_sign (TfColumnRule *rule, const char *word)
@@ -103,7 +109,7 @@ read_sign (TfColumnRule *rule, const char *word)
     { "equatorward", TF_SIGN_OURS, FALSE },  { "poleward", TF_SIGN_OTHER, FALSE },
     { "north", TF_SIGN_NORTH, FALSE },       { "south", TF_SIGN_SOUTH, FALSE },
   };
-  gboolean longitude = is_longitude (rule->name), tilt = strcmp (rule->name, "axis_tilt_deg") == 0;
+  gboolean longitude = is_longitude (rule->name), tilt = is_tilt (rule->name);
   for (guint k = 0; k < G_N_ELEMENTS (words); k++)
     if (strcmp (word, words[k].word) == 0 && (words[k].longitude ? longitude : tilt))
       {
@@ -111,7 +117,7 @@ read_sign (TfColumnRule *rule, const char *word)
         return NULL;
       }
   return _ ("“positive” takes west or east with a longitude, equatorward, poleward, north or south "
-            "with axis_tilt_deg");
+            "with axis_tilt_deg or polarity_tilt_deg");
 }
 
 static const char *

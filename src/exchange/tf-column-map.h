@@ -16,7 +16,7 @@
  *
  * Ours are the flat columns that are not judged, and time_jd and time_year. Said of a column:
  * "unit U"; "missing V" (a value that stands for none); of longitudes "positive west" or "positive
- * east"; of axis_tilt_deg where the sign is positive: "equatorward" (leader nearer the equator; ours),
+ * east"; of a tilt where its sign is positive: "equatorward" (leader nearer the equator; ours),
  * "poleward", "north", "south" (leader north or south of the follower); of polarity_tilt_deg
  * "range 180": it is folded to the axis tilt, and which pole leads is not taken from it.
  */
