@@ -33,6 +33,31 @@ all_tilts (const TfFindings *findings)
   return NULL;
 }
 
+/* "mu-below 3, cmd-beyond 12", by key; NULL for nothing. */
+static char *
+dup_counts (GHashTable *counts)
+{
+  g_autoptr (GList) keys = g_list_sort (g_hash_table_get_keys (counts), (GCompareFunc)g_strcmp0);
+  g_autoptr (GString) text = g_string_new (NULL);
+  for (GList *l = keys; l != NULL; l = l->next)
+    g_string_append_printf (text, "%s%s %u", text->len > 0 ? ", " : "", (char *)l->data,
+                            GPOINTER_TO_UINT (g_hash_table_lookup (counts, l->data)));
+  return text->len > 0 ? g_string_free (g_steal_pointer (&text), FALSE) : NULL;
+}
+
+/* What was left out, and what was not because its source does not say, by condition. */
+static void
+add_sieve (GString *out, const TfFindings *findings)
+{
+  g_autofree char *left_out = dup_counts (findings->left_out),
+                  *passed = dup_counts (findings->passed_without);
+  if (left_out != NULL)
+    g_string_append_printf (out, _ ("Left out: %s.\n"), left_out);
+  if (passed != NULL)
+    g_string_append_printf (out, _ ("Taken although the source lacks what a condition asks about: %s.\n"),
+                            passed);
+}
+
 static void
 add_hale (GString *out, const TfFindings *findings, const TfStudy *study)
 {
@@ -136,6 +161,7 @@ tf_findings_dup_words (const TfFindings *findings, const TfStudy *study)
   else
     g_string_append_printf (out, _ ("Marks within %.0f° of the central meridian.\n"),
                             study->sieve.cmd_max_deg);
+  add_sieve (out, findings);
   add_hale (out, findings, study);
   add_cycle_choice (out, findings);
   add_joy (out, findings, study);

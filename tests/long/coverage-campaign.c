@@ -22,7 +22,7 @@ main (void)
 {
   TfCyclesParams params;
   tf_options_reset (tf_cycles_options, &params);
-  Coverage c = coverage_run (&params, 1, 400, 1000, say);
+  Coverage c = coverage_run (&params, 1, 400, 1000, 0.95, say);
   printf ("%u seeds, %d regions a cycle: truth inside for the slope %.2f %%, the share by clusters %.2f %%, the share by "
           "Clopper-Pearson %.2f %%\n",
           c.seeds, params.regions, 100.0 * c.slope / c.seeds, 100.0 * c.share / c.seeds, 100.0 * c.exact / c.seeds);

@@ -28,7 +28,7 @@ holds (TfInterval interval, double truth)
 
 /* The study's default methods: linear, robust, regions that break left out. */
 static void
-run_seed (const TfCyclesParams *params, int draws, Coverage *coverage)
+run_seed (const TfCyclesParams *params, int draws, double level, Coverage *coverage)
 {
   TfHaleParams hale = { 0 };
   TfJoyParams joy = { 0 };
@@ -37,6 +37,7 @@ run_seed (const TfCyclesParams *params, int draws, Coverage *coverage)
   tf_options_reset (tf_joy_options, &joy);
   tf_options_reset (tf_sampling_options, &sampling);
   hale.draws = joy.draws = draws;
+  hale.level = joy.level = level;
   hale.seed = joy.seed = params->seed;
   g_autoptr (TfInvented) invented = tf_cycles_invent (params);
   g_autofree TfVerdict *verdicts = judge (invented->sample);
@@ -53,14 +54,14 @@ run_seed (const TfCyclesParams *params, int draws, Coverage *coverage)
 
 Coverage
 coverage_run (const TfCyclesParams *params, int first, guint seeds, int draws,
-              void (*say) (guint done))
+              double level, void (*say) (guint done))
 {
   Coverage coverage = { .seeds = seeds };
   for (guint k = 0; k < seeds; k++)
     {
       TfCyclesParams here = *params;
       here.seed = first + (int)k;
-      run_seed (&here, draws, &coverage);
+      run_seed (&here, draws, level, &coverage);
       if (say != NULL)
         say (k + 1);
     }

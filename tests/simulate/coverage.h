@@ -5,7 +5,7 @@
 
 #include "tf-cycles.h"
 
-/** How often intervals hold the truth over seeds first, first + 1, ... */
+/** How often intervals of a level hold the truth over seeds first, first + 1, ... */
 typedef struct
 {
   guint seeds;
@@ -14,4 +14,4 @@ typedef struct
 } Coverage;
 
 Coverage coverage_run (const TfCyclesParams *params, int first, guint seeds, int draws,
-                       void (*say) (guint done));
+                       double level, void (*say) (guint done));

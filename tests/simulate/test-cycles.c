@@ -131,17 +131,24 @@ test_files (void)
 }
 
 /* 60 seeds, 1001 to 1060, fixed beforehand. Of 95 % intervals fewer than 51 hold the truth with a
- * chance of 0.2 % (binomial); of 85 % ones, with 50 %. The 400 seeds of tests/long tell it closer. */
+ * chance of 0.2 % (binomial); of 85 % ones, with 50 %. Intervals that are too wide show at half the
+ * level: 18 to 42 of 60 with a chance of 99.9 %, while those of twice the width would hold 49. The 400
+ * seeds of tests/long tell it closer. */
 static void
 test_coverage (void)
 {
   TfCyclesParams params = cycles_params ();
   params.regions = 120;
-  Coverage found = coverage_run (&params, 1001, 60, 300, NULL);
+  Coverage found = coverage_run (&params, 1001, 60, 300, 0.95, NULL);
   g_test_message ("slope %u, share %u, exact %u of 60", found.slope, found.share, found.exact);
   tf_check_between ("slope", found.slope, 51, 60);
   tf_check_between ("share by clusters", found.share, 51, 60);
   tf_check_between ("share, exact", found.exact, 54, 60);
+  Coverage half = coverage_run (&params, 1001, 60, 300, 0.5, NULL);
+  g_test_message ("of half the level: slope %u, share %u, exact %u of 60", half.slope, half.share, half.exact);
+  tf_check_between ("slope, half", half.slope, 18, 42);
+  tf_check_between ("share by clusters, half", half.share, 18, 42);
+  tf_check_between ("share, exact, half", half.exact, 18, 50);
 }
 
 /* More regions tell more; equal truths are told apart as often as the chance asked for. The formula:
