@@ -9,14 +9,15 @@
 #include <math.h>
 
 #include "tf-chart-private.h"
-#include "tf-cycle.h"
+#include "tf-constants.h"
 
+#define MONTH_S      (365.25 * TF_DAY_S / 12)
 #define HANDLE_REACH 9.0
 #define LINE_REACH   6.0
 
 enum
 {
-  HANDLES = 3
+  HANDLES = 3 /* on the line */
 };
 
 typedef struct
@@ -54,9 +55,9 @@ static gboolean
 point_at (const TfWings *wings, TfArea plot, int cycle, int side, double month, DividePoint *point)
 {
   const TfDivideParams *params = tf_divides_get_params (wings->divides);
-  double year = tf_time_year (tf_cycle_minimum (cycle))
-                + month * 0.999 / 12; /* the ends themselves may lie a breath outside */
-  double lat = tf_divides_latitude (wings->divides, cycle, side, tf_time_from_year (year));
+  TfTime time = tf_time_add (tf_divides_get_minimum (wings->divides, cycle),
+                             month * MONTH_S * 0.9999); /* the ends themselves may lie a breath outside */
+  double year = tf_time_year (time), lat = tf_divides_latitude (wings->divides, cycle, side, time);
   *point = (DividePoint){ .x = tf_wings_x (wings, plot, year),
                           .high = tf_wings_y (wings, plot, side * (lat + params->band_deg)),
                           .middle = tf_wings_y (wings, plot, side * lat),
@@ -68,7 +69,7 @@ static gboolean
 in_view (const TfWings *wings, int cycle)
 {
   const TfDivideParams *params = tf_divides_get_params (wings->divides);
-  double minimum = tf_time_year (tf_cycle_minimum (cycle));
+  double minimum = tf_time_year (tf_divides_get_minimum (wings->divides, cycle));
   return minimum + params->after_months / 12.0 >= wings->from_year
          && minimum - params->before_months / 12.0 <= wings->to_year;
 }
@@ -98,6 +99,30 @@ draw_handle (cairo_t *cr, const TfChartStyle *style, const DividePoint *at, doub
   cairo_stroke (cr);
 }
 
+/* Of the chosen divide: at its ends how far it reaches in time, between them the edges of its band. */
+static void
+draw_grips (cairo_t *cr, const TfChartStyle *style, const DividePoint *at, int handle, double radius,
+            int chosen)
+{
+  gboolean end = handle != TF_WINGS_MINIMUM, taken = end ? chosen == handle : chosen == TF_WINGS_BAND;
+  cairo_new_path (cr);
+  if (end)
+    {
+      cairo_move_to (cr, at->x, at->high);
+      cairo_line_to (cr, at->x, at->low);
+    }
+  else
+    for (int k = 0; k < 2; k++)
+      {
+        double y = k == 0 ? at->high : at->low;
+        cairo_move_to (cr, at->x - radius * 2.2, y);
+        cairo_line_to (cr, at->x + radius * 2.2, y);
+      }
+  tf_chart_set (cr, style->teal);
+  cairo_set_line_width (cr, taken ? radius * 0.9 : radius * 0.45);
+  cairo_stroke (cr);
+}
+
 static gboolean
 is_held (const TfWings *wings, int cycle, int side)
 {
@@ -112,11 +137,14 @@ draw_handles (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfAr
   double radius = wings->movable ? style->text_pt * 0.36 : MIN (3.2, plot.height * 0.04);
   gboolean held = is_held (wings, cycle, side);
   DividePoint point;
+  for (int k = 0; held && wings->movable && k < HANDLES; k++)
+    if (point_at (wings, plot, cycle, side, handle_month (params, k), &point))
+      draw_grips (cr, style, &point, k, radius, wings->hold_handle);
   for (int k = 0; k < HANDLES; k++)
     if ((wings->movable || k != 1)
         && point_at (wings, plot, cycle, side, handle_month (params, k), &point))
       draw_handle (cr, style, &point, held ? radius * 1.35 : radius,
-                   held && (wings->hold_handle == k || wings->hold_handle < 0));
+                   held && (wings->hold_handle == k || wings->hold_handle == TF_WINGS_WHOLE));
 }
 
 static void
@@ -140,21 +168,43 @@ tf_wings_draw_divides (cairo_t *cr, const TfWings *wings, const TfChartStyle *st
 {
   if (wings->divides == NULL)
     return;
-  for (const TfCycle *cycle = tf_cycles; cycle->number > 0; cycle++)
+  for (int cycle = 2; cycle <= tf_divides_get_last (wings->divides); cycle++)
     {
-      draw_divide (cr, wings, style, plot, cycle->number, 1);
-      draw_divide (cr, wings, style, plot, cycle->number, -1);
+      draw_divide (cr, wings, style, plot, cycle, 1);
+      draw_divide (cr, wings, style, plot, cycle, -1);
     }
 }
 
 /* -- what is under the pointer ----------------------------------------------------------------- */
 
 static double
-far_from_segment (const DividePoint *a, const DividePoint *b, double x, double y)
+far_from_segment (double x0, double y0, double x1, double y1, double x, double y)
 {
-  double dx = b->x - a->x, dy = b->middle - a->middle, square = dx * dx + dy * dy;
-  double part = square > 0 ? CLAMP (((x - a->x) * dx + (y - a->middle) * dy) / square, 0, 1) : 0;
-  return hypot (a->x + part * dx - x, a->middle + part * dy - y);
+  double dx = x1 - x0, dy = y1 - y0, square = dx * dx + dy * dy;
+  double part = square > 0 ? CLAMP (((x - x0) * dx + (y - y0) * dy) / square, 0, 1) : 0;
+  return hypot (x0 + part * dx - x, y0 + part * dy - y);
+}
+
+/* The nearer of the line and, of a chosen divide, the edges of its band. */
+static double
+far_from_lines (const GArray *points, gboolean edges, double x, double y, int *handle)
+{
+  double best = INFINITY;
+  *handle = TF_WINGS_WHOLE;
+  for (guint k = 1; k < points->len; k++)
+    {
+      const DividePoint *a = &g_array_index (points, DividePoint, k - 1), *b = a + 1;
+      double line = far_from_segment (a->x, a->middle, b->x, b->middle, x, y);
+      double edge = fmin (far_from_segment (a->x, a->high, b->x, b->high, x, y),
+                          far_from_segment (a->x, a->low, b->x, b->low, x, y));
+      gboolean is_edge = edges && edge < line;
+      if ((is_edge ? edge : line) < best)
+        {
+          best = is_edge ? edge : line;
+          *handle = is_edge ? TF_WINGS_BAND : TF_WINGS_WHOLE;
+        }
+    }
+  return best;
 }
 
 /* How far the divide is; @handle as it would be taken. */
@@ -178,10 +228,7 @@ distance_of (const TfWings *wings, TfArea plot, int cycle, int side, double x, d
   if (isfinite (best))
     return best;
   g_autoptr (GArray) points = list_points (wings, plot, cycle, side);
-  *handle = -1;
-  for (guint k = 1; k < points->len; k++)
-    best = MIN (best, far_from_segment (&g_array_index (points, DividePoint, k - 1),
-                                        &g_array_index (points, DividePoint, k), x, y));
+  best = far_from_lines (points, is_held (wings, cycle, side), x, y, handle);
   return best <= LINE_REACH ? best + HANDLE_REACH : INFINITY; /* a handle goes before a line */
 }
 
@@ -194,15 +241,15 @@ tf_wings_hit_divide (const TfWings *wings, const TfChartStyle *style, TfArea are
     return FALSE;
   TfArea plot = tf_wings_plot (wings, style, area);
   double best = INFINITY;
-  for (const TfCycle *c = tf_cycles; c->number > 0; c++)
-    for (int s = 1; s >= -1 && in_view (wings, c->number); s -= 2)
+  for (int c = 2; c <= tf_divides_get_last (wings->divides); c++)
+    for (int s = 1; s >= -1 && in_view (wings, c); s -= 2)
       {
-        int h = -1;
-        double far = distance_of (wings, plot, c->number, s, x, y, &h);
+        int h = TF_WINGS_WHOLE;
+        double far = distance_of (wings, plot, c, s, x, y, &h);
         if (far < best)
           {
             best = far;
-            *cycle = c->number;
+            *cycle = c;
             *side = s;
             *handle = h;
           }

@@ -44,8 +44,29 @@ draw_pick (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea 
   tf_chart_set_alpha (cr, style->teal, 0.12);
   cairo_fill_preserve (cr);
   tf_chart_set (cr, style->teal);
-  cairo_set_line_width (cr, 1.2);
+  cairo_set_line_width (cr, wings->picking ? 2.4 : 1.2);
   cairo_stroke (cr);
+}
+
+/* While a stretch is chosen its numbers stand over it. */
+static void
+draw_picking (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
+{
+  g_autofree char *text = wings->picking ? tf_wings_dup_pick (wings) : NULL;
+  double width, height, pad = style->text_pt * 0.3;
+  if (text == NULL)
+    return;
+  tf_chart_measure (cr, style, text, &width, &height);
+  double middle = tf_wings_x (wings, plot, (wings->pick_from + wings->pick_to) / 2);
+  double x = CLAMP (middle - width / 2, plot.x + pad, MAX (plot.x + plot.width - width - pad, plot.x + pad));
+  double top = plot.y + pad * 2;
+  cairo_rectangle (cr, x - pad, top - pad, width + 2 * pad, height + 2 * pad);
+  tf_chart_set (cr, style->ground);
+  cairo_fill_preserve (cr);
+  tf_chart_set (cr, style->teal);
+  cairo_set_line_width (cr, 1);
+  cairo_stroke (cr);
+  tf_chart_text (cr, style, x, top, 0, 0, style->ink, text);
 }
 
 static void
@@ -141,6 +162,7 @@ tf_wings_draw_over (cairo_t *cr, const TfWings *wings, const TfChartStyle *style
   draw_chosen (cr, wings, style, plot, first, end);
   cairo_restore (cr);
   draw_frame_line (cr, wings, style, plot);
+  draw_picking (cr, wings, style, plot);
   cairo_restore (cr);
 }
 

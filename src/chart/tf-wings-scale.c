@@ -168,25 +168,50 @@ tf_wings_draw_scale (cairo_t *cr, const TfWings *wings, const TfChartStyle *styl
 
 /* -- cycles and divides ---------------------------------------------------------------------- */
 
-static void
-draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot,
-            const TfCycle *cycle)
+/* By the table, or the provisional minimum; NaN: not known. */
+static double
+minimum_year (const TfWings *wings, int cycle)
 {
-  double begin = tf_time_year (tf_cycle_minimum (cycle->number));
-  double end = tf_time_year (tf_cycle_minimum (cycle->number + 1)), width;
+  return tf_time_year (wings->divides != NULL ? tf_divides_get_minimum (wings->divides, cycle)
+                                              : tf_cycle_minimum (cycle));
+}
+
+/* A minimum that a person entered is a dashed line. */
+static void
+draw_provisional (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, double year)
+{
+  static const double dashes[] = { 5, 4 };
+  double x = floor (tf_wings_x (wings, plot, year)) + 0.5;
+  tf_chart_set (cr, style->teal);
+  cairo_set_line_width (cr, 1.2);
+  cairo_set_dash (cr, dashes, G_N_ELEMENTS (dashes), 0);
+  cairo_move_to (cr, x, plot.y);
+  cairo_line_to (cr, x, plot.y + plot.height);
+  cairo_stroke (cr);
+  cairo_set_dash (cr, NULL, 0, 0);
+}
+
+static void
+draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot, int number)
+{
+  double begin = minimum_year (wings, number), end = minimum_year (wings, number + 1), width;
+  gboolean provisional = tf_cycle_find (number) == NULL;
   double from = MAX (begin, wings->from_year),
          to = isfinite (end) ? MIN (end, wings->to_year) : wings->to_year;
   if (!(to > from))
     return;
   double left = tf_wings_x (wings, plot, from), right = tf_wings_x (wings, plot, to);
-  if (cycle->number % 2 != 0)
+  if (number % 2 != 0)
     {
       tf_chart_set (cr, style->band);
       cairo_rectangle (cr, left, plot.y, right - left, plot.height);
       cairo_fill (cr);
     }
-  g_autofree char *full = g_strdup_printf (_ ("cycle %d"), cycle->number);
-  g_autofree char *brief = g_strdup_printf ("%d", cycle->number);
+  if (provisional && begin >= wings->from_year)
+    draw_provisional (cr, wings, style, plot, begin);
+  g_autofree char *full
+      = g_strdup_printf (provisional ? _ ("cycle %d, provisional") : _ ("cycle %d"), number);
+  g_autofree char *brief = g_strdup_printf ("%d", number);
   tf_chart_measure (cr, style, full, &width, NULL);
   const char *label = width + 4 <= right - left ? full : brief;
   tf_chart_measure (cr, style, label, &width, NULL);
@@ -198,6 +223,6 @@ draw_cycle (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea
 void
 tf_wings_draw_cycles (cairo_t *cr, const TfWings *wings, const TfChartStyle *style, TfArea plot)
 {
-  for (const TfCycle *cycle = tf_cycles; cycle->number > 0; cycle++)
-    draw_cycle (cr, wings, style, plot, cycle);
+  for (int number = 1; isfinite (minimum_year (wings, number)); number++)
+    draw_cycle (cr, wings, style, plot, number);
 }

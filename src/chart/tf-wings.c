@@ -216,32 +216,75 @@ append_years (GString *text, const char *form, double from, double to)
   g_string_append (text, joined);
 }
 
-static void
-append_pick (GString *text, const TfWings *wings)
+static gboolean
+has_band (const TfWings *wings)
 {
-  append_years (text, _ ("Chosen stretch: {0} to {1}."), wings->pick_from, wings->pick_to);
-  if (isfinite (wings->pick_low) && isfinite (wings->pick_high))
+  return isfinite (wings->pick_low) && isfinite (wings->pick_high);
+}
+
+static guint
+count_picked (const TfWings *wings)
+{
+  guint n = 0;
+  for (guint k = tf_wings_first (wings, wings->pick_from);
+       k < wings->n && wings->dots[k].year <= wings->pick_to; k++)
+    n += !has_band (wings)
+         || ((double)wings->dots[k].lat_deg >= wings->pick_low
+             && (double)wings->dots[k].lat_deg <= wings->pick_high);
+  return n;
+}
+
+char *
+tf_wings_dup_pick (const TfWings *wings)
+{
+  g_return_val_if_fail (wings != NULL, NULL);
+  if (!isfinite (wings->pick_from) || !isfinite (wings->pick_to))
+    return NULL;
+  GString *text = g_string_new (NULL);
+  guint n = count_picked (wings);
+  gboolean near = wings->pick_to - wings->pick_from < 0.1;
+  g_string_append_printf (text, near ? _ ("%.3f to %.3f") : _ ("%.2f to %.2f"), wings->pick_from,
+                          wings->pick_to);
+  if (has_band (wings))
     {
       g_autofree char *low = tf_chart_dup_degrees (wings->pick_low, TRUE);
       g_autofree char *high = tf_chart_dup_degrees (wings->pick_high, TRUE);
-      g_string_append_printf (text, _ (" Latitudes %s to %s."), low, high);
+      g_string_append_printf (text, _ (", latitudes %s to %s"), low, high);
     }
+  g_string_append_printf (text, g_dngettext (GETTEXT_PACKAGE, ", %u dot in it", ", %u dots in it", n), n);
+  return g_string_free (text, FALSE);
+}
+
+static void
+append_pick (GString *text, const TfWings *wings)
+{
+  g_autofree char *pick = tf_wings_dup_pick (wings);
+  if (pick == NULL)
+    return;
+  g_string_append (text, text->len > 0 ? " " : "");
+  g_string_append_printf (text, wings->picking ? _ ("Being chosen: %s.") : _ ("Chosen stretch: %s."), pick);
 }
 
 static void
 append_hold (GString *text, const TfWings *wings)
 {
-  static const char *const handles[]
-      = { N_ ("all of it"), N_ ("its beginning"), N_ ("at the minimum"), N_ ("its end") };
+  static const char *const handles[] = { N_ ("all of it"), N_ ("its beginning"), N_ ("at the minimum"),
+                                         N_ ("its end"), N_ ("its unsure band") };
   if (wings->hold_cycle == 0 || wings->divides == NULL)
     return;
+  const TfDivideParams *params = tf_divides_get_params (wings->divides);
+  TfTime minimum = tf_divides_get_minimum (wings->divides, wings->hold_cycle);
   g_string_append_printf (
       text,
       wings->hold_side > 0 ? _ (" Divide before cycle %d, north, chosen: %s; at the minimum %.1f°.")
                            : _ (" Divide before cycle %d, south, chosen: %s; at the minimum %.1f°."),
-      wings->hold_cycle, _ (handles[CLAMP (wings->hold_handle + 1, 0, 3)]),
-      tf_divides_latitude (wings->divides, wings->hold_cycle, wings->hold_side,
-                           tf_cycle_minimum (wings->hold_cycle)));
+      wings->hold_cycle, _ (handles[CLAMP (wings->hold_handle + 1, 0, 4)]),
+      tf_divides_latitude (wings->divides, wings->hold_cycle, wings->hold_side, minimum));
+  g_string_append_printf (text, _ (" It acts from %d months before to %d months after the minimum; within "
+                                   "%.1f° of it the cycle is unsure."),
+                          params->before_months, params->after_months, params->band_deg);
+  if (tf_cycle_find (wings->hold_cycle) == NULL)
+    append_years (text, _ ("The minimum is provisional: {0}."), tf_time_year (minimum), 0);
   if (wings->plain)
     g_string_append (text, _ (" It is in hand: polarity and verdicts are hidden."));
 }
@@ -251,6 +294,8 @@ tf_wings_dup_description (const TfWings *wings)
 {
   g_return_val_if_fail (wings != NULL, NULL);
   GString *text = g_string_new (NULL);
+  if (wings->picking)
+    append_pick (text, wings);
   if (wings->n == 0)
     g_string_append (text, _ ("No marks or hints yet."));
   else
@@ -273,6 +318,7 @@ tf_wings_dup_description (const TfWings *wings)
   append_hold (text, wings);
   append_years (text, _ ("Shown: {0} to {1}."), wings->from_year, wings->to_year);
   append_years (text, _ ("The frame in view is at {0}."), wings->frame_year, wings->frame_year);
-  append_pick (text, wings);
+  if (!wings->picking)
+    append_pick (text, wings);
   return g_string_free (text, FALSE);
 }

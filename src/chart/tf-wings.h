@@ -34,13 +34,24 @@ typedef struct
   gint64 chosen;              /* id of the chosen dot; 0 none */
   double pick_from, pick_to;  /* the chosen stretch of years; NaN none */
   double pick_low, pick_high; /* and band of latitude; NaN all */
+  gboolean picking;           /* they are being chosen: what they hold stands beside them */
   const TfDivides *divides;   /* nullable */
   gboolean plain;             /* a divide is in hand: dots plain, verdicts hidden */
-  gboolean movable;           /* divides have handles: where they begin to act, at the minimum, where
-                                 they cease */
+  gboolean movable;           /* divides have handles */
   int hold_cycle, hold_side;  /* the chosen divide: the cycle it begins, hemisphere; cycle 0 none */
-  int hold_handle;            /* 0 to 2; -1 all of it */
+  int hold_handle;            /* TfWingsHandle */
 } TfWings;
+
+/** TfWingsHandle: what of a divide is taken: all of its line, the line where it begins to act, at the
+ * minimum, where it ceases; or the edge of the band in which the cycle is unsure. */
+typedef enum
+{
+  TF_WINGS_WHOLE = -1,
+  TF_WINGS_BEGIN,
+  TF_WINGS_MINIMUM,
+  TF_WINGS_END,
+  TF_WINGS_BAND,
+} TfWingsHandle;
 
 /** tf_wings_draw: tf_wings_draw_ground: scale, cycles and dots, which cost most when there are many;
  * then tf_wings_draw_over: divides, the stretch, the choice, the frame. */
@@ -66,10 +77,12 @@ void tf_wings_sort (TfWingsDot *dots, guint n);
 /** tf_wings_fit: sets from_year, to_year to all dots with a margin; at least a month; about @year
  * when there are none. */
 void tf_wings_fit (TfWings *wings, double year);
-/** tf_wings_hit_divide: the divide at a point: @handle 0 to 2 within 9 units of a handle, -1 within 6
- * of the line. FALSE: none, or not movable. */
+/** tf_wings_hit_divide: the divide at a point: a handle within 9 units of it, else the line, or the
+ * edge of the chosen one's band, within 6, whichever is nearer. FALSE: none, or not movable. */
 gboolean tf_wings_hit_divide (const TfWings *wings, const TfChartStyle *style, TfArea area,
                               double x, double y, int *cycle, int *side, int *handle);
+/** tf_wings_dup_pick: (nullable): the chosen stretch in words, with how many marks it holds. */
+char *tf_wings_dup_pick (const TfWings *wings);
 char *tf_wings_dup_description (const TfWings *wings);
 
 G_END_DECLS

@@ -76,13 +76,13 @@ ACTION (choose_divide)
 {
   int cycle, side;
   g_variant_get (value, "(ii)", &cycle, &side);
-  tf_session_choose_divide (session_of (window), cycle, side, TF_DIVIDE_WHOLE);
+  tf_session_choose_divide (session_of (window), cycle, side, TF_WINGS_WHOLE);
 }
 
 ACTION (next_handle)
 {
   const TfDivideHold hold = *tf_session_get_divide (session_of (window));
-  int handle = hold.handle + 1 < TF_DIVIDE_HANDLES ? hold.handle + 1 : TF_DIVIDE_WHOLE;
+  int handle = hold.handle < TF_WINGS_BAND ? hold.handle + 1 : TF_WINGS_WHOLE;
   if (hold.in_hand)
     tf_session_turn_divide (session_of (window), handle);
   else
@@ -90,6 +90,14 @@ ACTION (next_handle)
 }
 
 ACTION (move_divide) { tf_session_move_divide (session_of (window), g_variant_get_double (value)); }
+
+ACTION (shift_divide) { tf_session_shift_divide (session_of (window), g_variant_get_int32 (value)); }
+
+ACTION (next_minimum)
+{
+  if (!tf_session_take_provisional (session_of (window)))
+    tf_window_say (window, _ ("A divide can be moved on the Laws bench, in a ledger that can be written to."));
+}
 
 /* A deed that needs a name asks for it and is then done. */
 static void
@@ -127,6 +135,8 @@ static const GActionEntry entries[] = {
   { "choose-divide", choose_divide, "(ii)", NULL, NULL },
   { "next-handle", next_handle, NULL, NULL, NULL },
   { "move-divide", move_divide, "d", NULL, NULL },
+  { "shift-divide", shift_divide, "i", NULL, NULL },
+  { "next-minimum", next_minimum, NULL, NULL, NULL },
   { "keep-divide", keep_divide, NULL, NULL, NULL },
   { "compute-divide", compute_divide, NULL, NULL, NULL },
   { "put-back-divide", put_back_divide, NULL, NULL, NULL },
@@ -163,6 +173,8 @@ tf_window_update_laws_actions (TfWindow *self)
   enable (self, "choose-divide", shown);
   enable (self, "next-handle", hold->cycle != 0);
   enable (self, "move-divide", movable);
+  enable (self, "shift-divide", tf_session_can_shift_divide (session));
+  enable (self, "next-minimum", shown && tf_session_is_writable (session));
   enable (self, "keep-divide", hold->in_hand);
   enable (self, "compute-divide", movable);
   enable (self, "put-back-divide", hold->cycle != 0);

@@ -49,6 +49,12 @@ void tf_session_take_study (TfSession *session, TfStudy *study);
 /** tf_session_study_deed: (transfer full): keeps it. tf_session_push_study: (transfer full): a deed about
  * a study; what the window has is newer until it is in the ledger. */
 TfDeed *tf_session_study_deed (TfSession *session, const TfStudy *study);
+/** tf_session_is_same_reach: in what is moved on the wings for all divides: how far they reach, their
+ * band, the provisional minimum. */
+gboolean tf_session_is_same_reach (const TfDivideParams *a, const TfDivideParams *b);
+/** tf_session_divide_options_deed: (transfer full): keeps the study as it was kept, but for those; what
+ * else is changed stays not kept. */
+TfDeed *tf_session_divide_options_deed (TfSession *session, const TfDivideParams *params);
 void tf_session_push_study (TfSession *session, TfDeed *deed);
 
 G_END_DECLS

@@ -60,6 +60,7 @@ dup_study_now (TfSession *self)
     {
       g_clear_pointer (&study->divides, tf_divides_unref);
       study->divides = tf_divides_ref (self->laws->moved);
+      study->divide = self->laws->hold.params;
     }
   return study;
 }
@@ -117,6 +118,9 @@ tf_session_take_study (TfSession *self, TfStudy *study)
 {
   tf_study_free (self->laws->study);
   self->laws->study = study;
+  const TfDivideHold hold = self->laws->hold;
+  if (hold.cycle != 0)
+    tf_session_choose_divide (self, hold.cycle, hold.hemisphere, hold.handle);
   tf_session_ask_laws (self);
   tf_session_refresh (self, FALSE); /* the wings are judged by this study, too */
   tf_session_emit (self, TF_SIGNAL_LAWS);

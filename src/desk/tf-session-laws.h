@@ -8,6 +8,7 @@
 
 #include "tf-laws-work.h"
 #include "tf-session.h"
+#include "tf-wings.h"
 
 G_BEGIN_DECLS
 
@@ -25,19 +26,21 @@ gboolean tf_session_awaits_laws (TfSession *session);
 gboolean tf_session_get_all_relations (TfSession *session);
 void tf_session_set_all_relations (TfSession *session, gboolean all);
 
-/* -- divides */
+/* -- divides. A line belongs to one minimum and hemisphere; how far divides reach in time, their unsure
+ * band and the provisional next minimum are the study's, for all of them. */
 enum
 {
-  TF_DIVIDE_HANDLES = 3, /* where it begins to act, at the minimum, where it ceases */
-  TF_DIVIDE_WHOLE = -1
+  TF_DIVIDE_HANDLES = 3 /* where it begins to act, at the minimum, where it ceases */
 };
 typedef struct
 {
   int cycle, hemisphere;           /* cycle 0: none is chosen */
-  int handle;                      /* 0 to 2, or TF_DIVIDE_WHOLE */
+  int handle;                      /* TfWingsHandle */
   gboolean in_hand;                /* being moved: not yet kept */
+  gboolean drawn;                  /* its line is, too */
   TfTime times[TF_DIVIDE_HANDLES]; /* of the chosen one */
   double lats[TF_DIVIDE_HANDLES];
+  TfDivideParams params;           /* the study's, as moved */
 } TfDivideHold;
 const TfDivideHold *tf_session_get_divide (TfSession *session);
 /** tf_session_choose_divide: cycle 0: none. What is in hand is put back first. */
@@ -49,14 +52,22 @@ void tf_session_step_divide (TfSession *session, int step, double from_year, dou
 void tf_session_turn_divide (TfSession *session, int handle);
 /** tf_session_can_move_divide: one is chosen and the ledger can be written to. */
 gboolean tf_session_can_move_divide (TfSession *session);
-/** tf_session_move_divide: its handle, or all of it, by so many degrees of |lat|; it is in hand from
- * then on. Numbers follow; dots are plain unless polarity is shown. */
+/** tf_session_move_divide: its handle, or all of it, by so many degrees of |lat|, or its band by so many
+ * wider; it is in hand from then on. Numbers follow; dots are plain unless polarity is shown. */
 void tf_session_move_divide (TfSession *session, double degrees);
+/** tf_session_can_shift_divide: what is chosen of it can go in time: an end, or a provisional minimum. */
+gboolean tf_session_can_shift_divide (TfSession *session);
+/** tf_session_shift_divide: it goes by so many months; in hand from then on. */
+void tf_session_shift_divide (TfSession *session, int months);
+/** tf_session_take_provisional: the provisional next minimum is chosen; where there is none, one is in
+ * hand at the mean length of a cycle after the last. FALSE: nothing can be moved now. */
+gboolean tf_session_take_provisional (TfSession *session);
 /** tf_session_keep_divide: lets it go where it is: a deed. FALSE when none is in hand. */
 gboolean tf_session_keep_divide (TfSession *session);
 /** tf_session_put_back_divide: as if it had not been taken in hand. */
 gboolean tf_session_put_back_divide (TfSession *session);
-/** tf_session_compute_divide: sets the chosen one back to computed: a deed. */
+/** tf_session_compute_divide: sets what is chosen back to computed: a deed. Of an end, how far it reaches,
+ * too; of the band, its width alone; a provisional minimum is taken away. */
 gboolean tf_session_compute_divide (TfSession *session);
 gboolean tf_session_get_show_polarity (TfSession *session);
 /** tf_session_set_show_polarity: while moving; what is moved so says so for ever. */

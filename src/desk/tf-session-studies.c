@@ -178,6 +178,29 @@ read_names (TfLedger *ledger, gpointer data, GError **error)
   return names;
 }
 
+static void
+take_moved_options (TfDivideParams *divide, const TfDivideParams *moved)
+{
+  divide->before_months = moved->before_months;
+  divide->after_months = moved->after_months;
+  divide->band_deg = moved->band_deg;
+  divide->provisional_year = moved->provisional_year;
+}
+
+/* A study with changes of its own follows in what is moved on the wings alone. */
+static void
+follow_divides (TfSession *self, const char *before)
+{
+  g_autoptr (TfStudy) was = before != NULL ? tf_study_read_text (before, "", NULL) : NULL;
+  g_autoptr (TfStudy) is = dup_standing (self, self->laws->study->name);
+  g_autoptr (TfStudy) study = tf_study_copy (self->laws->study);
+  if (was == NULL || is == NULL || !tf_session_is_same_reach (&was->divide, &study->divide)
+      || tf_session_is_same_reach (&is->divide, &study->divide))
+    return;
+  take_moved_options (&study->divide, &is->divide);
+  tf_session_set_study (self, study);
+}
+
 /* A study in view that was as kept follows what is kept: an undo, or another window's keeping. */
 static void
 follow (TfSession *self, gboolean was_kept)
@@ -185,8 +208,13 @@ follow (TfSession *self, gboolean was_kept)
   TfSessionLaws *laws = self->laws;
   g_autofree char *before = g_steal_pointer (&laws->kept_text);
   laws->kept_text = dup_kept_text (self, laws->study->name);
-  if (!was_kept || laws->kept_text == NULL || g_strcmp0 (before, laws->kept_text) == 0)
+  if (laws->kept_text == NULL || g_strcmp0 (before, laws->kept_text) == 0)
     return;
+  if (!was_kept)
+    {
+      follow_divides (self, before);
+      return;
+    }
   TfStudy *study = dup_standing (self, laws->study->name);
   if (study == NULL)
     return;
@@ -264,6 +292,18 @@ tf_session_study_deed (TfSession *self, const TfStudy *study)
   deed->study = g_strdup (study->name);
   deed->text = tf_study_dup_text (kept);
   return deed;
+}
+
+TfDeed *
+tf_session_divide_options_deed (TfSession *self, const TfDivideParams *params)
+{
+  g_autoptr (TfStudy) kept = dup_standing (self, self->laws->study->name);
+  if (kept == NULL)
+    kept = tf_study_copy (self->laws->study);
+  take_moved_options (&kept->divide, params);
+  g_free (self->laws->kept_text);
+  self->laws->kept_text = dup_plain_text (kept);
+  return tf_session_study_deed (self, kept);
 }
 
 /* The divides of a study that has another name in the ledger, or none. */

@@ -7,6 +7,7 @@
 #include <adwaita.h>
 #include <glib/gi18n-lib.h>
 
+#include "tf-band-hand.h"
 #include "tf-session-laws.h"
 #include "tf-widget-style.h"
 #include "tf-wings.h"
@@ -17,12 +18,21 @@ struct _TfWingsView
   TfSession *session;
   TfWings wings;
   TfDivides *divides; /* those of wings: kept alive, the session may change its own at any time */
-  gboolean fitted;
+  gboolean fitted, widened; /* to all dots; or was, before a minimum beyond them was taken in hand */
   cairo_surface_t *surface; /* the ground as it was drawn last */
   gboolean stale;
   double pointer_x;
+  const char *cursor; /* static: of the pointer now; NULL: the usual one */
   double drag_from, drag_lat; /* where a drag began: year, latitude; NaN: none in hand */
-  gboolean moves_divide;      /* the drag has a divide; drag_lat is where it was seen last */
+  gboolean moves_divide;      /* the drag has a divide; drag_lat and drag_from are where it was seen last */
+  enum
+  {
+    WAY_OPEN,
+    IN_TIME,
+    IN_LATITUDE
+  } way;              /* of that drag: one at a time */
+  TfBandHand band; /* chosen by keys */
+  double divide_side; /* 1: a drag upwards moves it away from the equator, or widens its band */
 };
 
 G_DEFINE_FINAL_TYPE (TfWingsView, tf_wings_view, GTK_TYPE_WIDGET)
@@ -55,7 +65,13 @@ style_of (TfWingsView *self)
 static void
 redraw_over (TfWingsView *self)
 {
-  tf_widget_describe (GTK_WIDGET (self), tf_wings_dup_description (&self->wings));
+  g_autofree char *shown = tf_wings_dup_description (&self->wings);
+  tf_widget_describe (GTK_WIDGET (self),
+                      self->band.on ? g_strconcat (shown,
+                                                   _ (" The arrows move it, with Shift its later or upper "
+                                                      "edge; Return takes it, Escape leaves it."),
+                                                   NULL)
+                                    : g_steal_pointer (&shown));
   gtk_widget_queue_draw (GTK_WIDGET (self));
 }
 
@@ -82,15 +98,60 @@ this_year (void)
   return g_date_time_get_year (now) + g_date_time_get_day_of_year (now) / 365.25;
 }
 
-static void
+static double
+provisional_of (const TfDivides *divides)
+{
+  return divides != NULL ? tf_divides_get_params (divides)->provisional_year : NAN;
+}
+
+/* TRUE: the bands of the cycles are others, too. */
+static gboolean
 take_divides (TfWingsView *self)
 {
   const TfDivides *now = tf_session_get_divides (self->session);
   if (now == self->divides)
-    return;
+    return FALSE;
+  double before = provisional_of (self->divides), after = provisional_of (now);
   g_clear_pointer (&self->divides, tf_divides_unref);
   self->divides = now != NULL ? tf_divides_ref ((TfDivides *)now) : NULL;
   self->wings.divides = self->divides;
+  return before < after || before > after || isnan (before) != isnan (after);
+}
+
+/* A provisional minimum in hand may lie beyond what is shown. */
+static gboolean
+show_hold (TfWingsView *self, const TfDivideHold *hold)
+{
+  double end = tf_time_year (hold->times[TF_WINGS_END]), margin = 0.5;
+  if (!hold->in_hand || !(end + margin > self->wings.to_year)
+      || tf_time_year (hold->times[TF_WINGS_MINIMUM]) < self->wings.from_year)
+    return FALSE;
+  self->widened |= self->fitted;
+  self->fitted = FALSE;
+  self->wings.to_year = end + margin;
+  return TRUE;
+}
+
+/* It is put back: all that there is, as before. */
+static gboolean
+show_as_before (TfWingsView *self, const TfDivideHold *hold)
+{
+  if (!self->widened || hold->cycle != 0)
+    return FALSE;
+  self->widened = FALSE;
+  self->fitted = TRUE;
+  tf_wings_fit (&self->wings, isfinite (self->wings.frame_year) ? self->wings.frame_year : this_year ());
+  return TRUE;
+}
+
+static void
+show_stretch (TfWingsView *self)
+{
+  TfStretch stretch = tf_session_get_stretch (self->session);
+  self->wings.pick_from = stretch.from_year;
+  self->wings.pick_to = stretch.to_year;
+  self->wings.pick_low = stretch.low_deg;
+  self->wings.pick_high = stretch.high_deg;
 }
 
 static void
@@ -102,11 +163,8 @@ points_changed (TfWingsView *self)
   take_divides (self);
   self->wings.frame_year = frame_year (self);
   self->wings.chosen = tf_session_get_chosen_dot (self->session);
-  TfStretch stretch = tf_session_get_stretch (self->session);
-  self->wings.pick_from = stretch.from_year;
-  self->wings.pick_to = stretch.to_year;
-  self->wings.pick_low = stretch.low_deg;
-  self->wings.pick_high = stretch.high_deg;
+  if (!self->wings.picking)
+    show_stretch (self);
   if (self->fitted)
     tf_wings_fit (&self->wings,
                   isfinite (self->wings.frame_year) ? self->wings.frame_year : this_year ());
@@ -143,7 +201,8 @@ laws_changed (TfWingsView *self)
                   || (hold->in_hand && tf_session_get_show_polarity (self->session));
   if (movable != self->wings.movable)
     gtk_widget_queue_resize (GTK_WIDGET (self));
-  take_divides (self);
+  dots |= take_divides (self);
+  dots |= show_hold (self, hold) || show_as_before (self, hold);
   self->wings.plain = plain;
   self->wings.movable = movable;
   self->wings.hold_cycle = hold->cycle;
@@ -186,7 +245,7 @@ set_span (TfWingsView *self, double from, double to)
 {
   if (to - from < shortest_years || to - from > longest_years)
     return;
-  self->fitted = FALSE;
+  self->fitted = self->widened = FALSE;
   self->wings.from_year = from;
   self->wings.to_year = to;
   redraw (self);
@@ -229,10 +288,36 @@ scrolled (GtkEventControllerScroll *scroll, double dx, double dy, TfWingsView *s
   return TRUE;
 }
 
+/* What a drag would take is told by the pointer. */
 static void
 motion (GtkEventControllerMotion *controller, double x, double y, TfWingsView *self)
 {
+  TfChartStyle style = style_of (self);
+  int cycle, side, handle;
   self->pointer_x = x;
+  const char *name = NULL;
+  if (self->wings.movable
+      && tf_wings_hit_divide (&self->wings, &style, area_of (self), x, y, &cycle, &side, &handle))
+    name = handle == TF_WINGS_BEGIN || handle == TF_WINGS_END
+                   || (handle != TF_WINGS_BAND && tf_cycle_find (cycle) == NULL)
+               ? "move"
+               : "ns-resize";
+  if (g_strcmp0 (name, self->cursor) == 0)
+    return;
+  self->cursor = name;
+  gtk_widget_set_cursor_from_name (GTK_WIDGET (self), name);
+}
+
+/* One that is in hand stays so; a provisional minimum is that of both hemispheres. */
+static void
+take_divide (TfWingsView *self, int cycle, int side, int handle)
+{
+  const TfDivideHold *hold = tf_session_get_divide (self->session);
+  gboolean same = hold->cycle == cycle && (hold->hemisphere == side || tf_cycle_find (cycle) == NULL);
+  if (hold->in_hand && same)
+    tf_session_turn_divide (self->session, handle);
+  else
+    tf_session_choose_divide (self->session, cycle, side, handle);
 }
 
 static void
@@ -246,17 +331,43 @@ drag_begin (GtkGestureDrag *gesture, double x, double y, TfWingsView *self)
   self->moves_divide = self->session != NULL
                        && tf_wings_hit_divide (&self->wings, &style, area_of (self), x, y, &cycle,
                                                &side, &handle);
-  if (self->moves_divide)
-    tf_session_choose_divide (self->session, cycle, side, handle);
+  if (!self->moves_divide)
+    return;
+  take_divide (self, cycle, side, handle);
+  double line = tf_divides_latitude (self->divides, cycle, side, tf_time_from_year (self->drag_from));
+  gboolean below = handle == TF_WINGS_BAND && side * self->drag_lat < line;
+  self->way = WAY_OPEN;
+  self->divide_side = below ? -side : side;
 }
 
 static void
 move_divide (TfWingsView *self, double y)
 {
   double lat = lat_at (self, y);
-  int side = tf_session_get_divide (self->session)->hemisphere;
-  tf_session_move_divide (self->session, side * (lat - self->drag_lat));
+  tf_session_move_divide (self->session, self->divide_side * (lat - self->drag_lat));
   self->drag_lat = lat;
+}
+
+/* By whole months; what is left of a month waits for the next. */
+static void
+shift_divide (TfWingsView *self, double x)
+{
+  int months = (int)trunc ((year_at (self, x) - self->drag_from) * 12);
+  tf_session_shift_divide (self->session, months);
+  self->drag_from += months / 12.0;
+}
+
+/* The first steps say whether an end goes in time or in latitude: one at a time. */
+static void
+drag_divide (TfWingsView *self, double x, double y, double dx, double dy)
+{
+  gboolean across = fabs (dx) > fabs (dy) && tf_session_can_shift_divide (self->session);
+  if (self->way == WAY_OPEN && (across ? fabs (dx) : fabs (dy)) >= CLICK_SLACK)
+    self->way = across ? IN_TIME : IN_LATITUDE;
+  if (self->way == IN_TIME)
+    shift_divide (self, x + dx);
+  else if (self->way == IN_LATITUDE)
+    move_divide (self, y + dy);
 }
 
 static void
@@ -266,14 +377,14 @@ drag_update (GtkGestureDrag *gesture, double dx, double dy, TfWingsView *self)
   gtk_gesture_drag_get_start_point (gesture, &x, &y);
   if (self->moves_divide)
     {
-      if (fabs (dy) >= CLICK_SLACK || tf_session_get_divide (self->session)->in_hand)
-        move_divide (self, y + dy);
+      drag_divide (self, x, y, dx, dy);
       return;
     }
   if (fabs (dx) < CLICK_SLACK)
     return;
   gboolean band = fabs (dy) >= BAND_SLACK;
   double lat = lat_at (self, y + dy);
+  self->wings.picking = TRUE;
   self->wings.pick_from = fmin (self->drag_from, year_at (self, x + dx));
   self->wings.pick_to = fmax (self->drag_from, year_at (self, x + dx));
   self->wings.pick_low = band ? fmin (self->drag_lat, lat) : NAN;
@@ -299,6 +410,7 @@ drag_end (GtkGestureDrag *gesture, double dx, double dy, TfWingsView *self)
   if (self->session == NULL || isnan (self->drag_from))
     return;
   gtk_gesture_drag_get_start_point (gesture, &x, &y);
+  self->wings.picking = self->band.on = FALSE;
   if (self->moves_divide)
     gtk_widget_activate_action (GTK_WIDGET (self), "win.keep-divide", NULL);
   else if (fabs (dx) < CLICK_SLACK)
@@ -322,7 +434,8 @@ static gboolean
 divide_key (TfWingsView *self, guint key)
 {
   GtkWidget *widget = GTK_WIDGET (self);
-  gboolean chosen = self->wings.hold_cycle != 0;
+  gboolean chosen = self->wings.hold_cycle != 0,
+           in_time = tf_session_can_shift_divide (self->session);
   switch (key)
     {
     case GDK_KEY_d:
@@ -341,6 +454,12 @@ divide_key (TfWingsView *self, guint key)
       return chosen
              && gtk_widget_activate_action (widget, "win.move-divide", "d",
                                             -self->wings.hold_side * key_step_deg);
+    case GDK_KEY_Left:
+      return in_time && gtk_widget_activate_action (widget, "win.shift-divide", "i", -1);
+    case GDK_KEY_Right:
+      return in_time && gtk_widget_activate_action (widget, "win.shift-divide", "i", 1);
+    case GDK_KEY_m:
+      return gtk_widget_activate_action (widget, "win.next-minimum", NULL);
     case GDK_KEY_Return:
     case GDK_KEY_KP_Enter:
       return chosen && gtk_widget_activate_action (widget, "win.keep-divide", NULL);
@@ -352,6 +471,28 @@ divide_key (TfWingsView *self, guint key)
     default:
       return FALSE;
     }
+}
+
+/* A stretch and a band of its own, by keys; everything follows when it is taken. */
+static gboolean
+band_key (TfWingsView *self, guint key, gboolean shift)
+{
+  TfBandHand *band = &self->band;
+  TfBandStep step = tf_band_hand_key (band, &self->wings, key, shift);
+  if (step == TF_BAND_NOT_HEARD)
+    return FALSE;
+  self->wings.picking = band->on;
+  self->wings.pick_from = band->from;
+  self->wings.pick_to = band->to;
+  self->wings.pick_low = band->low;
+  self->wings.pick_high = band->high;
+  if (step == TF_BAND_TAKEN)
+    gtk_widget_activate_action (GTK_WIDGET (self), "win.pick", "(dddd)", band->from, band->to, band->low,
+                                band->high);
+  else if (step == TF_BAND_LEFT)
+    show_stretch (self);
+  redraw_over (self);
+  return TRUE;
 }
 
 static gboolean
@@ -404,7 +545,12 @@ key_pressed (GtkEventControllerKey *controller, guint key, guint code, GdkModifi
 {
   if (self->session == NULL || (state & (GDK_CONTROL_MASK | GDK_ALT_MASK)) != 0)
     return FALSE;
-  return (self->wings.movable && divide_key (self, key)) || stretch_key (self, key)
+  gboolean shift = (state & GDK_SHIFT_MASK) != 0;
+  if (band_key (self, key, shift))
+    return TRUE;
+  /* with Shift the arrows go along time, whatever is chosen */
+  gboolean along = shift && (key == GDK_KEY_Left || key == GDK_KEY_Right);
+  return (self->wings.movable && !along && divide_key (self, key)) || stretch_key (self, key)
          || time_key (self, key);
 }
 

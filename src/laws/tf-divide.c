@@ -184,6 +184,13 @@ tf_divides_get_last (const TfDivides *divides)
   return divides->last;
 }
 
+TfTime
+tf_divides_get_minimum (const TfDivides *divides, int number)
+{
+  gboolean known = number >= 1 && number <= divides->last;
+  return known ? (TfTime){ divides->minima[number] } : TF_TIME_UNKNOWN;
+}
+
 guint
 tf_divides_get_moved (const TfDivides *divides, int cycle, int hemisphere, const double **times,
                       const double **lats)

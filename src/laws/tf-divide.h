@@ -52,6 +52,9 @@ const TfDivideParams *tf_divides_get_params (const TfDivides *divides);
 /** tf_divides_get_last: the last cycle with a minimum, a provisional one included; there is a divide
  * at the minimum beginning each from 2 on. */
 int tf_divides_get_last (const TfDivides *divides);
+/** tf_divides_get_minimum: when cycle @number begins, by the table or the provisional minimum; unknown
+ * beyond tf_divides_get_last(). */
+TfTime tf_divides_get_minimum (const TfDivides *divides, int number);
 /** tf_divides_get_moved: points of a moved divide: times (s of TT) and |lat|, borrowed; 0 when it is
  * computed. */
 guint tf_divides_get_moved (const TfDivides *divides, int cycle, int hemisphere,

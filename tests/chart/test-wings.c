@@ -215,11 +215,50 @@ a_divide_is_found_by_its_handles_and_its_line (void)
         g_assert_cmpint (handle, ==, k < 3 ? k : -1);
         g_assert_false (tf_wings_hit_divide (&wings, &style, area, x, y + side * 12, &cycle, &found,
                                              &handle));
+        for (int edge = 1; k == 3 && edge >= -1; edge -= 2) /* the edges of its band, once it is chosen */
+          {
+            wings.hold_cycle = 24;
+            wings.hold_side = side;
+            double at = tf_wings_y_of (&wings, &style, area, side * (lat + edge * params.band_deg));
+            g_assert_true (tf_wings_hit_divide (&wings, &style, area, x, at - side * edge, &cycle,
+                                                &found, &handle));
+            g_assert_cmpint (handle, ==, TF_WINGS_BAND);
+            wings.hold_cycle = 0;
+          }
         wings.movable = FALSE;
         g_assert_false (
             tf_wings_hit_divide (&wings, &style, area, x, y, &cycle, &found, &handle));
         wings.movable = TRUE;
       }
+}
+
+/* A provisional minimum has its divide, to be seen and taken; the description says what it is. */
+static void
+a_provisional_minimum_has_its_divide (void)
+{
+  TfDivideParams params;
+  tf_options_reset (tf_divide_options, &params);
+  params.provisional_year = 2030.5;
+  g_autoptr (TfDivides) divides = tf_divides_new (&params);
+  TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
+  TfWings wings = wings_of (NULL, 0);
+  wings.divides = divides;
+  wings.from_year = 2020;
+  wings.to_year = 2034;
+  wings.movable = TRUE;
+  int last = tf_divides_get_last (divides), cycle = 0, side = 0, handle = 9;
+  double lat = tf_divides_latitude (divides, last, -1, tf_time_from_year (2030.5));
+  g_assert_null (tf_cycle_find (last));
+  g_assert_true (tf_wings_hit_divide (&wings, &style, area, tf_wings_x_of (&wings, &style, area, 2030.5),
+                                      tf_wings_y_of (&wings, &style, area, -lat), &cycle, &side, &handle));
+  g_assert_cmpint (cycle, ==, last);
+  g_assert_cmpint (side, ==, -1);
+  g_assert_cmpint (handle, ==, TF_WINGS_MINIMUM);
+  wings.hold_cycle = cycle;
+  wings.hold_side = side;
+  wings.hold_handle = handle;
+  g_autofree char *words = tf_wings_dup_description (&wings);
+  g_assert_nonnull (strstr (words, "provisional: 2030.50"));
 }
 
 static void
@@ -459,6 +498,8 @@ add_wings_tests (void)
   g_test_add_func ("/chart/wings/labels-of-time-never-overlap", labels_of_time_never_overlap);
   g_test_add_func ("/chart/wings/a-divide-is-found-by-its-handles-and-its-line",
                    a_divide_is_found_by_its_handles_and_its_line);
+  g_test_add_func ("/chart/wings/a-provisional-minimum-has-its-divide",
+                   a_provisional_minimum_has_its_divide);
   g_test_add_func ("/chart/wings/the-chosen-handle-is-filled", the_chosen_handle_is_filled);
   g_test_add_func ("/chart/wings/the-description-counts", the_description_counts);
 }

@@ -540,6 +540,7 @@ static const struct
   { "pin-here", "pin" },
   { "choose-divide", "next-divide" },
   { "move-divide", "next-divide" },
+  { "shift-divide", "next-divide" },
   { "pick", "stretch" },
   { "open-mark", NULL },     /* a dot of a chart */
   { "apply-what-if", NULL }, /* a row of the list */

@@ -11,9 +11,11 @@
 #include <adwaita.h>
 
 #include "tf-check.h"
+#include "tf-band-hand.h"
 #include "tf-chart-view.h"
 #include "tf-ledger-divides.h"
-#include "tf-session-laws.h"
+#include "tf-ledger-studies.h"
+#include "tf-session-studies.h"
 #include "tf-window.h"
 #include "tf-wings.h"
 
@@ -248,7 +250,7 @@ a_divide_in_hand_moves_the_numbers (void)
   g_assert_cmpuint (count_moved (path), ==, 0);
   g_assert_true (tf_session_redo (session));
   test_desk_wait ("the redoing", has_five_breaking, session);
-  tf_session_choose_divide (session, 24, 1, TF_DIVIDE_WHOLE);
+  tf_session_choose_divide (session, 24, 1, TF_WINGS_WHOLE);
   g_assert_true (tf_session_compute_divide (session));
   test_desk_wait ("computed again", has_one_breaking, session);
   test_desk_wait ("the deed", is_quiet, session);
@@ -281,7 +283,7 @@ polarity_in_sight_is_told (void)
   g_autoptr (TfSession) session = test_desk_laws_session (path);
   g_assert_cmpuint (count_verdicts (session, TF_VERDICT_BREAKS), ==, 1);
   tf_session_set_show_polarity (session, TRUE);
-  tf_session_choose_divide (session, 24, 1, TF_DIVIDE_WHOLE);
+  tf_session_choose_divide (session, 24, 1, TF_WINGS_WHOLE);
   tf_session_move_divide (session, 16);
   g_assert_false (tf_session_is_plain (session));
   g_assert_cmpuint (count_verdicts (session, TF_VERDICT_BREAKS), ==, 5);
@@ -292,6 +294,171 @@ polarity_in_sight_is_told (void)
   g_autoptr (GPtrArray) moved = tf_ledger_divides (ledger, "default", NULL);
   g_assert_cmpuint (moved->len, ==, 1);
   g_assert_true (((TfMovedDivide *)moved->pdata[0])->shown);
+}
+
+/* -- what is the study's: reach, band, the provisional minimum ----------------------------------- */
+
+static gboolean
+has_wide_band (gpointer session)
+{
+  return is_quiet (session) && tf_session_get_study (session)->divide.band_deg > 19;
+}
+
+static gboolean
+has_plain_reach (gpointer session)
+{
+  const TfDivideParams *now = &tf_session_get_study (session)->divide;
+  return is_quiet (session) && now->band_deg < 5 && now->before_months == 24 && now->after_months == 18;
+}
+
+static TfStudy *
+dup_kept (const char *path)
+{
+  g_autoptr (TfLedger) ledger = tf_ledger_open (path, NULL);
+  g_autoptr (TfNamed) kept = tf_ledger_study (ledger, "default", NULL);
+  return kept != NULL ? tf_study_read_text (kept->text, "kept", NULL) : NULL;
+}
+
+/* 24 S begins to act eight months later: the four of 2008 in the north are as they were but for the
+ * sentence; a band of 20 deg makes them unsure. Kept, undone, set back. */
+static void
+reach_and_band_are_taken_in_hand (void)
+{
+  g_autofree char *path = test_desk_laws_ledger ("reach.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
+  const TfDivideHold *hold = tf_session_get_divide (session);
+  guint unsure = all_cycles (session)->cannot_say;
+  tf_session_choose_divide (session, 24, -1, TF_WINGS_WHOLE);
+  g_assert_false (tf_session_can_shift_divide (session)); /* a listed minimum stays where it is */
+  tf_session_turn_divide (session, TF_WINGS_BEGIN);
+  tf_session_shift_divide (session, 8);
+  g_assert_true (tf_session_is_plain (session));
+  g_assert_cmpint (hold->params.before_months, ==, 16);
+  g_assert_cmpint (tf_session_get_study (session)->divide.before_months, ==, 24);
+  tf_check_near ("its beginning", tf_time_year (hold->times[TF_WINGS_BEGIN]),
+                 tf_time_year (tf_cycle_minimum (24)) - 16 / 12.0, 0.01);
+  tf_session_turn_divide (session, TF_WINGS_BAND);
+  tf_session_move_divide (session, 16);
+  g_assert_false (hold->drawn);
+  test_desk_wait ("the answer", is_quiet, session);
+  g_assert_cmpuint (all_cycles (session)->cannot_say, ==, unsure + 4);
+  g_assert_true (tf_session_keep_divide (session));
+  test_desk_wait ("the deed", is_quiet, session);
+  g_assert_cmpuint (count_moved (path), ==, 0); /* no line was moved */
+  g_autoptr (TfStudy) kept = dup_kept (path);
+  g_assert_cmpint (kept->divide.before_months, ==, 16);
+  tf_check_near ("the band", kept->divide.band_deg, 20, 1e-9);
+  tf_session_turn_divide (session, TF_WINGS_BAND);
+  g_assert_true (tf_session_compute_divide (session));
+  test_desk_wait ("the deed", is_quiet, session);
+  g_assert_cmpuint (all_cycles (session)->cannot_say, ==, unsure);
+  g_assert_cmpint (tf_session_get_study (session)->divide.before_months, ==, 16);
+  g_assert_true (tf_session_undo (session));
+  test_desk_wait ("the band again", has_wide_band, session);
+  g_assert_true (tf_session_undo (session));
+  test_desk_wait ("neither", has_plain_reach, session);
+}
+
+/* What else is changed in the study is not kept with them; polarity in sight is told. */
+static void
+only_what_was_moved_is_kept (void)
+{
+  g_autofree char *path = test_desk_laws_ledger ("only.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
+  g_autoptr (TfStudy) study = tf_study_copy (tf_session_get_study (session));
+  study->sieve.cmd_max_deg = 45;
+  tf_session_set_study (session, study);
+  tf_session_set_show_polarity (session, TRUE);
+  tf_session_choose_divide (session, 24, 1, TF_WINGS_END);
+  tf_session_shift_divide (session, -3);
+  g_assert_true (tf_session_keep_divide (session));
+  test_desk_wait ("the sentence to say it", says_shown, session);
+  g_autoptr (TfStudy) kept = dup_kept (path);
+  g_assert_cmpint (kept->divide.after_months, ==, 15);
+  tf_check_near ("the limb cut as it was kept", kept->sieve.cmd_max_deg, 60, 1e-9);
+  tf_check_near ("the limb cut in the window", tf_session_get_study (session)->sieve.cmd_max_deg, 45, 1e-9);
+  g_assert_true (tf_session_is_study_changed (session));
+  g_assert_true (tf_session_undo (session));
+  test_desk_wait ("the reach to follow the undoing", has_plain_reach, session);
+  tf_check_near ("the limb cut still", tf_session_get_study (session)->sieve.cmd_max_deg, 45, 1e-9);
+}
+
+static void
+a_provisional_minimum_is_taken_in_hand (void)
+{
+  g_autofree char *path = test_desk_laws_ledger ("provisional.ledger");
+  g_autoptr (TfSession) session = test_desk_laws_session (path);
+  const TfDivideHold *hold = tf_session_get_divide (session);
+  int last = 1;
+  while (tf_cycle_find (last + 1) != NULL)
+    last++;
+  g_assert_true (tf_session_take_provisional (session));
+  g_assert_cmpint (hold->cycle, ==, last + 1);
+  g_assert_true (hold->in_hand);
+  double first = hold->params.provisional_year;
+  tf_check_between ("a cycle's length on", first, tf_time_year (tf_cycle_minimum (last)) + 10,
+                    tf_time_year (tf_cycle_minimum (last)) + 12);
+  tf_session_shift_divide (session, 18);
+  tf_check_near ("a year and a half on", hold->params.provisional_year, first + 1.5, 1e-9);
+  tf_session_put_back_divide (session);
+  g_assert_cmpint (hold->cycle, ==, 0); /* it was never kept */
+  g_assert_true (tf_session_take_provisional (session));
+  g_assert_true (tf_session_keep_divide (session));
+  test_desk_wait ("the deed", is_quiet, session);
+  g_assert_cmpint (hold->cycle, ==, last + 1);
+  g_assert_nonnull (strstr (tf_session_get_laws (session)->words, "provisional"));
+  tf_session_turn_divide (session, TF_WINGS_WHOLE);
+  tf_session_move_divide (session, 3); /* its line, too */
+  g_assert_true (tf_session_keep_divide (session));
+  test_desk_wait ("the line", is_quiet, session);
+  g_assert_cmpuint (count_moved (path), ==, 1);
+  tf_session_turn_divide (session, TF_WINGS_MINIMUM);
+  g_assert_true (tf_session_compute_divide (session)); /* taken away, its line with it */
+  test_desk_wait ("the deed", is_quiet, session);
+  g_assert_true (isnan (tf_session_get_study (session)->divide.provisional_year));
+  g_assert_cmpuint (count_moved (path), ==, 0);
+  g_assert_cmpint (hold->cycle, ==, 0);
+}
+
+/* -- a stretch and a band by keys ---------------------------------------------------------------- */
+
+static void
+a_band_is_chosen_by_keys (void)
+{
+  const TfWingsDot dots[] = { { .year = 2001, .lat_deg = 10 }, { .year = 2004, .lat_deg = -10 },
+                              { .year = 2005, .lat_deg = 12 }, { .year = 2009, .lat_deg = 20 } };
+  TfWings wings = { .dots = dots, .n = G_N_ELEMENTS (dots), .from_year = 2000, .to_year = 2012,
+                    .lat_max_deg = 45, .frame_year = NAN, .pick_from = NAN, .pick_to = NAN,
+                    .pick_low = NAN, .pick_high = NAN };
+  TfBandHand hand = { 0 };
+  g_assert_cmpint (tf_band_hand_key (&hand, &wings, GDK_KEY_Left, FALSE), ==, TF_BAND_NOT_HEARD);
+  g_assert_cmpint (tf_band_hand_key (&hand, &wings, GDK_KEY_b, FALSE), ==, TF_BAND_MOVED);
+  tf_check_near ("the middle third", hand.from, 2004, 1e-9);
+  tf_check_near ("to its end", hand.to, 2008, 1e-9);
+  tf_band_hand_key (&hand, &wings, GDK_KEY_Left, FALSE);
+  tf_band_hand_key (&hand, &wings, GDK_KEY_Right, TRUE);
+  tf_check_near ("moved and widened", hand.from, 2003.7, 1e-9);
+  tf_check_near ("at its later edge", hand.to, 2008, 1e-9);
+  tf_band_hand_key (&hand, &wings, GDK_KEY_Up, FALSE); /* the north */
+  tf_check_near ("from the equator", hand.low, 0, 1e-9);
+  tf_band_hand_key (&hand, &wings, GDK_KEY_Down, TRUE);
+  tf_band_hand_key (&hand, &wings, GDK_KEY_Down, FALSE);
+  tf_check_near ("down by a degree", hand.low, -1, 1e-9);
+  tf_check_near ("and narrower", hand.high, 43, 1e-9);
+  wings.pick_from = hand.from;
+  wings.pick_to = hand.to;
+  wings.pick_low = hand.low;
+  wings.pick_high = hand.high;
+  g_autofree char *words = tf_wings_dup_pick (&wings);
+  g_assert_nonnull (strstr (words, "1 dot in it"));
+  for (int k = 0; k < 100; k++)
+    tf_band_hand_key (&hand, &wings, GDK_KEY_Left, TRUE);
+  g_assert_cmpfloat (hand.to, >, hand.from);
+  for (int k = 0; k < 100; k++)
+    tf_band_hand_key (&hand, &wings, GDK_KEY_Up, FALSE);
+  g_assert_cmpfloat (hand.high, >, hand.low);
+  g_assert_cmpint (tf_band_hand_key (&hand, &wings, GDK_KEY_Return, FALSE), ==, TF_BAND_TAKEN);
+  g_assert_cmpint (tf_band_hand_key (&hand, &wings, GDK_KEY_Return, FALSE), ==, TF_BAND_NOT_HEARD);
 }
 
 /* -- the bench --------------------------------------------------------------------------------- */
@@ -359,5 +526,10 @@ test_desk_add_laws (void)
   g_test_add_func ("/desk/laws/a-divide-in-hand-moves-the-numbers",
                    a_divide_in_hand_moves_the_numbers);
   g_test_add_func ("/desk/laws/polarity-in-sight-is-told", polarity_in_sight_is_told);
+  g_test_add_func ("/desk/laws/reach-and-band-are-taken-in-hand", reach_and_band_are_taken_in_hand);
+  g_test_add_func ("/desk/laws/only-what-was-moved-is-kept", only_what_was_moved_is_kept);
+  g_test_add_func ("/desk/laws/a-provisional-minimum-is-taken-in-hand",
+                   a_provisional_minimum_is_taken_in_hand);
+  g_test_add_func ("/desk/laws/a-band-is-chosen-by-keys", a_band_is_chosen_by_keys);
   g_test_add_func ("/desk/laws/the-bench-is-shown-and-left", the_bench_is_shown_and_left);
 }

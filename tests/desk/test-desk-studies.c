@@ -135,7 +135,7 @@ copies_take_their_divides_along (void)
   g_autofree char *path = test_desk_laws_ledger ("copies.ledger");
   g_autoptr (TfSession) session = test_desk_laws_session (path);
   wait_settled (session);
-  tf_session_choose_divide (session, 24, 1, TF_DIVIDE_WHOLE);
+  tf_session_choose_divide (session, 24, 1, TF_WINGS_WHOLE);
   tf_session_move_divide (session, 3);
   g_assert_false (tf_session_keep_study (session, "low")); /* a divide is in hand */
   g_assert_true (tf_session_keep_divide (session));

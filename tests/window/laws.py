@@ -43,6 +43,12 @@ def open_laws(w):
     return share(w)
 
 
+def kept_reach(w, ledger):
+    """How many months before a minimum divides act in the study that is kept."""
+    found = [re.search(r'"divide-before"\s*:\s*(\d+)', row[0]) for row in w.rows(ledger, "SELECT text FROM study WHERE live")]
+    return int(found[0].group(1)) if found and found[0] else None
+
+
 def chosen_handle(w):
     """Where the filled handle is, in pixels of the display: a block of the divides' colour."""
     path = os.path.join(w.base, "wings.png")
@@ -83,6 +89,16 @@ def _(given):
             w.action("undo")
             w.wait_value("moved divides after undo", ledger, MOVED, 0)
             w.wait("the share to be what it was", lambda: share(w) == before)
+            w.action("choose-divide", w.glib.Variant("(ii)", (23, 1)))
+            w.action("next-handle")
+            w.wait("its beginning to be chosen", lambda: "its beginning" in (w.description("Wings") or ""))
+            w.wait("the handle to be seen", lambda: chosen_handle(w) is not None)
+            x, y = chosen_handle(w)
+            w.drag([(x - k, y) for k in range(0, 32, 2)])
+            w.wait("the reach to be kept", lambda: (kept_reach(w, ledger) or 0) > 28)
+            w.wait("the wings to say so", lambda: "It acts from 24 months" not in (w.description("Wings") or ""))
+            w.action("undo")
+            w.wait("the reach as it was", lambda: "It acts from 24 months" in (w.description("Wings") or ""))
 
 
 @scenario("by keyboard a divide is chosen, moved, kept, and set back to computed; everything has a name")
