@@ -90,6 +90,12 @@ dup_missing (const TfPassageContent *content)
 
 /* -- the figures ----------------------------------------------------------------------------- */
 
+static TfUnits
+units_of (TfFollowed *followed)
+{
+  return tf_session_get_units (followed->session);
+}
+
 static char *
 dup_tilt (const TfMeasure *m)
 {
@@ -117,7 +123,7 @@ add_taken (GPtrArray *facts, TfFollowed *followed, const TfPassageContent *conte
        : flux ? _ ("Sampling rule: the mark of greatest unsigned flux among those with μ ≥ 0.5.")
             : _ ("Sampling rule: the mark nearest the central meridian."));
   add (facts, _ ("tilt then"), dup_tilt (m), NULL);
-  add (facts, _ ("flux then"), tf_chart_dup_flux (m->flux_unsigned_mx), _ ("Unsigned."));
+  add (facts, _ ("flux then"), tf_units_dup_flux (units_of (followed), m->flux_unsigned_mx), _ ("Unsigned."));
 }
 
 /* What is derived from the passage, or the brushed stretch of it, each with the window it was taken from. */
@@ -131,12 +137,12 @@ dup_window (const TfFigure *figure, const char *method)
 }
 
 static void
-add_rate (GPtrArray *facts, const char *name, const TfFigure *rate)
+add_rate (GPtrArray *facts, const char *name, const TfFigure *rate, TfUnits units)
 {
   if (!isfinite (rate->value))
     return;
-  g_autofree char *value = tf_chart_dup_flux (fabs (rate->value) * 24),
-                  *sigma = tf_chart_dup_flux (rate->sigma * 24);
+  g_autofree char *value = tf_units_dup_flux (units, fabs (rate->value) * 24),
+                  *sigma = tf_units_dup_flux (units, rate->sigma * 24);
   g_autofree char *how = dup_window (
       rate, _ ("Least squares on the unsigned flux between a tenth and nine tenths of the greatest."));
   add (facts, name, g_strdup_printf (_ ("%s ± %s a day"), value, sigma), how);
@@ -148,8 +154,8 @@ add_derived (GPtrArray *facts, TfFollowed *followed)
   const TfDerived *d = tf_followed_get_derived (followed);
   TfTime from, to;
   tf_followed_get_brush (followed, &from, &to);
-  add_rate (facts, _ ("emerging at"), &d->emergence);
-  add_rate (facts, _ ("decaying at"), &d->decay);
+  add_rate (facts, _ ("emerging at"), &d->emergence, units_of (followed));
+  add_rate (facts, _ ("decaying at"), &d->decay, units_of (followed));
   if (!isfinite (d->tilt_mean.value))
     return;
   g_autofree char *value = tf_words_dup_signed (d->tilt_mean.value, 1),
@@ -164,15 +170,16 @@ add_derived (GPtrArray *facts, TfFollowed *followed)
 }
 
 static void
-add_floor (GPtrArray *facts, const TfPassageContent *content)
+add_floor (GPtrArray *facts, const TfPassageContent *content, TfUnits units)
 {
   double floor = content->series->floor_gauss;
   guint other = content->series->n_other_floor;
   if (!isfinite (floor))
     return;
+  g_autofree char *value = tf_units_dup_field (units, floor, 0);
   add (facts, _ ("even floor"),
-       other == 0 ? g_strdup_printf (_ ("%.0f G, all"), floor)
-                  : g_strdup_printf (_ ("%.0f G; %u measured with another"), floor, other),
+       other == 0 ? g_strdup_printf (_ ("%s, all"), value)
+                  : g_strdup_printf (_ ("%s; %u measured with another"), value, other),
        _ ("One floor for the whole passage, so that the flux of a constant region does not fall "
           "towards the limb. tiltfield-run laws or export measures what lacks it."));
 }
@@ -190,7 +197,7 @@ tf_follow_facts (TfFollowed *followed)
   add (facts, _ ("missing"), dup_missing (content), NULL);
   add_taken (facts, followed, content);
   add_derived (facts, followed);
-  add_floor (facts, content);
+  add_floor (facts, content, units_of (followed));
   return facts;
 }
 

@@ -55,6 +55,7 @@ struct _TfFollowed
   TfPool *pool;
   double range;
   TfPalette palette;
+  TfUnits units; /* that the figures were last told in */
 };
 
 void tf_followed_emit (TfFollowed *self, TfFollowedSignal signal);

@@ -7,6 +7,7 @@
 #include "tf-followed-private.h"
 
 #include <math.h>
+#include <string.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-intake.h"
@@ -436,6 +437,11 @@ view_changed (TfFollowed *self)
   if (fabs (self->range - tf_session_get_range (self->session)) > 0.5
       || self->palette != tf_session_get_palette (self->session))
     tf_followed_forget_pictures (self);
+  TfUnits units = tf_session_get_units (self->session);
+  if (memcmp (&units, &self->units, sizeof units) == 0)
+    return;
+  self->units = units;
+  tf_followed_emit (self, TF_FOLLOWED_MOMENT);
 }
 
 void

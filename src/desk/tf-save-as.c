@@ -5,7 +5,10 @@
 
 #include <glib/gi18n-lib.h>
 
+#include "tf-preferences.h"
 #include "tf-session-private.h"
+
+static const char folder_key[] = "save-folder";
 
 enum
 {
@@ -51,10 +54,24 @@ answered (GtkNativeDialog *dialog, int response, gpointer data)
   g_autoptr (GFile) file = gtk_file_chooser_get_file (GTK_FILE_CHOOSER (dialog));
   g_autofree char *path = file != NULL ? g_file_get_path (file) : NULL;
   if (response == GTK_RESPONSE_ACCEPT && path != NULL)
-    asked->chosen (window, asked->what, path);
+    {
+      g_autofree char *folder = g_path_get_dirname (path);
+      tf_preferences_set (folder_key, folder);
+      asked->chosen (window, asked->what, path);
+    }
   else if (response == GTK_RESPONSE_ACCEPT)
     tf_window_say (window, _ ("That place is not on this computer: nothing was saved."));
   g_object_unref (dialog);
+}
+
+/* Where the last file was saved, while that is there. */
+static void
+begin_where_saved_last (GtkFileChooser *chooser)
+{
+  g_autofree char *path = tf_preferences_dup (folder_key);
+  g_autoptr (GFile) folder = path != NULL ? g_file_new_for_path (path) : NULL;
+  if (folder != NULL && g_file_test (path, G_FILE_TEST_IS_DIR))
+    gtk_file_chooser_set_current_folder (chooser, folder, NULL);
 }
 
 void
@@ -68,6 +85,7 @@ tf_save_as_ask (TfWindow *window, const char *title, const char *name, const cha
   Asked *asked = g_new (Asked, 1);
   *asked = (Asked){ g_strdup (what), chosen };
   gtk_native_dialog_set_modal (GTK_NATIVE_DIALOG (chooser), TRUE);
+  begin_where_saved_last (GTK_FILE_CHOOSER (chooser));
   gtk_file_chooser_set_current_name (GTK_FILE_CHOOSER (chooser), name);
   g_signal_connect_data (chooser, "response", G_CALLBACK (answered), asked, asked_free, 0);
   gtk_native_dialog_show (GTK_NATIVE_DIALOG (chooser));

@@ -217,9 +217,12 @@ take_reading (TfSession *self, Reading *r)
       g_clear_pointer (&self->joins, g_hash_table_unref);
       self->joins = g_steal_pointer (&r->joins);
       tf_session_replace_regions (self, r->rows);
-      if (tf_session_get_pending (self) == 0)
-        tf_session_forget_hoped (self);
-      tf_session_restore_draft (self, r->draft);
+      gboolean newest = tf_session_get_pending (self) == 0 && !self->refresh_again;
+      if (newest) /* else the ledger may have had an older draft yet */
+        {
+          tf_session_forget_hoped (self);
+          tf_session_restore_draft (self, r->draft);
+        }
     }
   tf_session_replace_points (self, g_steal_pointer (&r->points), g_steal_pointer (&r->dots),
                              g_steal_pointer (&r->mark_dots));

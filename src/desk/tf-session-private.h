@@ -256,8 +256,10 @@ void tf_session_init_overlays (TfSession *session);
 void tf_session_clear_overlays (TfSession *session);
 /** tf_session_update_overlays: asks for the lines and ghosts of what is on the plate now. */
 void tf_session_update_overlays (TfSession *session);
-/** tf_session_push_deed: (transfer full): to the writer. */
-void tf_session_push_deed (TfSession *session, TfDeed *deed);
+/** tf_session_push_deed: (transfer full): to the writer; TRUE */
+gboolean tf_session_push_deed (TfSession *session, TfDeed *deed);
+/** tf_session_new_deed: by the person, on the frame in view */
+TfDeed *tf_session_new_deed (TfSession *session, TfDeedKind kind);
 /** tf_session_in_band: whether a latitude is in the band picked on the wings. */
 gboolean tf_session_in_band (TfSession *session, double lat_deg);
 

@@ -158,16 +158,6 @@ tf_session_choose_newest (TfSession *self)
 /* -- deeds of a shift -------------------------------------------------------------------------- */
 
 static gboolean
-push (TfSession *self, TfDeed *deed)
-{
-  g_free (self->saved);
-  self->saved = g_strdup (_ ("saving…"));
-  tf_writer_push (self->writer, deed);
-  tf_session_emit (self, TF_SIGNAL_STATUS);
-  return TRUE;
-}
-
-static gboolean
 can_write (TfSession *self)
 {
   if (!tf_session_is_writable (self))
@@ -206,14 +196,14 @@ tf_session_settle (TfSession *self)
   TfDeed *deed = tf_deed_new (TF_DEED_SETTLE, self->person);
   deed->region = note->region;
   deed->author = note->author;
-  return push (self, deed);
+  return tf_session_push_deed (self, deed);
 }
 
 gboolean
 tf_session_hand_over (TfSession *self)
 {
   g_return_val_if_fail (TF_IS_SESSION (self), FALSE);
-  return can_write (self) && push (self, tf_deed_new (TF_DEED_HAND_OVER, self->person));
+  return can_write (self) && tf_session_push_deed (self, tf_deed_new (TF_DEED_HAND_OVER, self->person));
 }
 
 static const TfOthers *
@@ -241,7 +231,7 @@ tf_session_confirm (TfSession *self)
   TfDeed *deed = tf_deed_new (TF_DEED_EXTERNAL, self->person);
   deed->region = tf_session_get_shift_row (self)->region;
   deed->text = g_strdup (others->number);
-  return push (self, deed);
+  return tf_session_push_deed (self, deed);
 }
 
 gboolean
@@ -252,7 +242,7 @@ tf_session_bring (TfSession *self, const char *path)
     return FALSE;
   TfDeed *deed = tf_deed_new (TF_DEED_BRING, self->person);
   deed->text = g_strdup (path);
-  return push (self, deed);
+  return tf_session_push_deed (self, deed);
 }
 
 /* Drawn outlines have no figures yet: they follow the mark, behind what is still to be written. */

@@ -8,6 +8,7 @@
 
 #include "tf-actions-follow.h"
 #include "tf-check.h"
+#include "tf-follow-facts.h"
 #include "tf-follow-film.h"
 #include "tf-intake.h"
 #include "tf-save-as.h"
@@ -379,6 +380,38 @@ film_is_numbered_encoded_or_refused (void)
   bench_clear (&bench);
 }
 
+static const char *
+fact (GPtrArray *facts, const char *name)
+{
+  for (guint k = 0; k < facts->len; k++)
+    if (strcmp (((const TfFact *)g_ptr_array_index (facts, k))->name, name) == 0)
+      return ((const TfFact *)g_ptr_array_index (facts, k))->value;
+  return NULL;
+}
+
+static void
+count_moment (TfFollowed *followed, guint *n)
+{
+  ++*n;
+}
+
+static void
+figures_are_in_the_chosen_units (void)
+{
+  Bench bench = bench_new ("follow-units.ledger");
+  guint told = 0;
+  g_autoptr (GPtrArray) usual = tf_follow_facts (bench.followed);
+  g_assert_true (g_str_has_suffix (fact (usual, "flux then"), " Mx"));
+  g_signal_connect (bench.followed, "moment-changed", G_CALLBACK (count_moment), &told);
+  tf_session_set_unit (bench.session, TF_UNIT_FLUX, 1);
+  tf_session_set_unit (bench.session, TF_UNIT_FIELD, 1);
+  g_assert_cmpuint (told, >=, 2);
+  g_autoptr (GPtrArray) si = tf_follow_facts (bench.followed);
+  g_assert_true (g_str_has_suffix (fact (si, "flux then"), " Wb"));
+  g_assert_nonnull (strstr (fact (si, "even floor"), " mT"));
+  bench_clear (&bench);
+}
+
 void
 test_desk_add_follow (void)
 {
@@ -389,5 +422,6 @@ test_desk_add_follow (void)
   g_test_add_func ("/desk/follow/looks-fill-in-and-step-within-the-stretch", looks_fill_in_and_step);
   g_test_add_func ("/desk/follow/a-cut-is-a-deed-that-undo-takes-back", cut_and_undo);
   g_test_add_func ("/desk/follow/the-view-stays-with-its-outline", view_stays_with_its_outline);
+  g_test_add_func ("/desk/follow/figures-are-in-the-chosen-units", figures_are_in_the_chosen_units);
   g_test_add_func ("/desk/follow/the-taken-mark-follows-the-rule", taken_mark_follows_the_rule);
 }
