@@ -98,14 +98,14 @@ tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
 }
 
 TfLedger *
-tf_batch_open_measured (const char *path, gboolean with_hints, GError **error)
+tf_batch_open_measured (const char *path, const TfStudy *study, gboolean with_hints, GError **error)
 {
   g_autoptr (TfLedger) ledger = tf_ledger_open (path, error);
   if (ledger == NULL)
     return NULL;
   const TfRowQuery query = { .marks = TRUE, .hints = with_hints };
   g_autoptr (TfWork) work = tf_batch_work_new (0);
-  if (!tf_intake_measure_even (ledger, tf_study_even_floor (ledger, NULL), &query, work, error))
+  if (!tf_intake_measure_even (ledger, tf_study_floor (study, ledger), &query, work, error))
     return NULL;
   return g_steal_pointer (&ledger);
 }

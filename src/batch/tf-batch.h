@@ -117,7 +117,8 @@ void tf_progress_end (TfProgress *progress);
 
 /** tf_batch_open_measured: opens a ledger and sees to it that its rows are measured with the study's even floor, as far as their frames
  * are there. NULL with an error. */
-TfLedger *tf_batch_open_measured (const char *path, gboolean with_hints, GError **error);
+TfLedger *
+tf_batch_open_measured (const char *path, const TfStudy *study, gboolean with_hints, GError **error);
 
 /* -- tables of text ---------------------------------------------------------------------------- */
 typedef struct _TfTable TfTable;

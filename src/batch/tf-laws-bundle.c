@@ -60,7 +60,7 @@ tf_batch_laws_bundle (const char *path, const TfBundle *bundle, TfStudy *study, 
                       const TfLawsWords *words)
 {
   g_autoptr (GError) error = NULL;
-  g_autoptr (TfFindings) findings = tf_study_run_source (study, bundle->source);
+  g_autoptr (TfFindings) findings = tf_study_run_taken (study, bundle->taken, NULL);
   g_autoptr (GPtrArray) figures
       = words->figures != NULL ? tf_findings_write_figures (findings, study, words->figures, &error)
                                : NULL;

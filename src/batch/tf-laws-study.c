@@ -227,12 +227,12 @@ static gboolean
 write_bundle (TfLedger *ledger, const TfStudy *study, const TfFindings *findings, const char *path,
               GError **error)
 {
-  g_autoptr (TfStudySource) source = tf_study_source_read (study, ledger, error);
-  if (source == NULL || !tf_bundle_write (path, study, findings, source, error))
+  g_autoptr (TfStudyTaken) taken = tf_study_take_whole (study, ledger, error);
+  if (taken == NULL || !tf_bundle_write (path, study, findings, taken, error))
     return FALSE;
   g_autofree char *line = g_strdup_printf (
       _ ("%s: the study “%s” with %u rows, %u of them picks, its numbers and its charts; tiltfield-run laws %s works them out again"),
-      path, study->name, source->rows->len, tf_sample_get_n (findings->sample), path);
+      path, study->name, tf_study_taken_get_n (taken), tf_sample_get_n (findings->sample), path);
   tf_batch_say (line);
   return TRUE;
 }

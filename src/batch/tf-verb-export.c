@@ -97,7 +97,7 @@ export_table (const char *path, const char *out, const Words *words)
   guint n = 0;
   gboolean frames = g_strcmp0 (words->what, "frames") == 0;
   g_autoptr (TfStudy) study = tf_study_new_default ();
-  g_autoptr (TfLedger) ledger = frames ? tf_ledger_open (path, &error) : tf_batch_open_measured (path, words->with_hints, &error);
+  g_autoptr (TfLedger) ledger = frames ? tf_ledger_open (path, &error) : tf_batch_open_measured (path, study, words->with_hints, &error);
   if (ledger == NULL || !tf_study_read_divides (study, ledger, &error)
       || !write_table (out, ledger, study, words, words->source != NULL ? words->source : path, &n, &error))
     return fail (error);
@@ -117,7 +117,7 @@ export_stamps (const char *path, const char *folder, const Words *words)
   g_auto (TfStampsSum) sum = { 0 };
   g_autoptr (TfStudy) study = tf_study_new_default ();
   study->sieve.with_hints = words->with_hints;
-  g_autoptr (TfLedger) ledger = tf_batch_open_measured (path, words->with_hints, &error);
+  g_autoptr (TfLedger) ledger = tf_batch_open_measured (path, study, words->with_hints, &error);
   if (ledger == NULL || !tf_study_read_divides (study, ledger, &error)
       || !tf_stamps_write (folder, ledger, study, &sum, &error))
     return fail (error);

@@ -1,6 +1,7 @@
 /* SPDX-License-Identifier: GPL-3.0-or-later
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
+#include <math.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-batch.h"
@@ -11,10 +12,10 @@
 
 /* The measures that the what-ifs about the floor ask for. */
 static gboolean
-measure_floors (TfLedger *ledger, gboolean with_hints, GError **error)
+measure_floors (TfLedger *ledger, const TfStudy *study, GError **error)
 {
-  const TfRowQuery query = { .marks = TRUE, .hints = with_hints };
-  double floor = tf_study_even_floor (ledger, NULL);
+  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints };
+  double floor = tf_study_floor (study, ledger);
   g_autoptr (TfWork) work = tf_batch_work_new (0);
   return tf_intake_measure_even (ledger, TF_WHAT_IF_LOWER * floor, &query, work, error)
          && tf_intake_measure_even (ledger, TF_WHAT_IF_HIGHER * floor, &query, work, error);
@@ -59,9 +60,8 @@ laws (const char *path, TfStudy *study, gboolean from_file, gboolean floors, gbo
       const TfLawsWords *words)
 {
   g_autoptr (GError) error = NULL;
-  gboolean hints = study->sieve.with_hints;
-  g_autoptr (TfLedger) ledger = tf_batch_open_measured (path, hints, &error);
-  if (ledger == NULL || (floors && !measure_floors (ledger, hints, &error))
+  g_autoptr (TfLedger) ledger = tf_batch_open_measured (path, study, study->sieve.with_hints, &error);
+  if (ledger == NULL || (floors && !measure_floors (ledger, study, &error))
       || (!from_file && !tf_study_read_divides (study, ledger, &error)))
     return fail (error);
   g_autoptr (TfFindings) findings = tf_study_run (study, ledger, &error);
@@ -81,6 +81,7 @@ int
 tf_verb_laws (int argc, char **argv)
 {
   gboolean json = FALSE, with_hints = FALSE, floors = FALSE, from_file = FALSE;
+  double even_floor = NAN;
   g_auto (TfLawsWords) words = { 0 };
   g_autoptr (GError) error = NULL;
   g_autoptr (TfBundle) bundle = NULL;
@@ -91,6 +92,8 @@ tf_verb_laws (int argc, char **argv)
     { "json", 0, 0, G_OPTION_ARG_NONE, &json, N_ ("print one JSON document"), NULL },
     { "with-hints", 0, 0, G_OPTION_ARG_NONE, &with_hints, N_ ("take hints in, counted apart"), NULL },
     { "figures", 0, 0, G_OPTION_ARG_FILENAME, &words.figures, N_ ("write the charts into this folder as PDF"), "DIR" },
+    { "even-floor", 0, 0, G_OPTION_ARG_DOUBLE, &even_floor,
+      N_ ("the study's even floor; 0: the one that the ledger's frames ask for now"), "G" },
     { "measure-floors", 0, 0, G_OPTION_ARG_NONE, &floors,
       N_ ("measure with the floor a fifth lower and higher, too, for the what-ifs (opens the frames)"), NULL },
     { NULL },
@@ -105,6 +108,10 @@ tf_verb_laws (int argc, char **argv)
     return tf_batch_usage ("laws", _ ("Name one ledger, or one study bundle."));
   if ((words.keep_study || words.keep_edition != NULL) && words.person == NULL)
     return tf_batch_usage ("laws", _ ("Keeping a study or an edition is a person's deed: say whose with --person."));
+  if (even_floor < 0 || even_floor > 1e4)
+    return tf_batch_usage ("laws", _ ("An even floor lies from 0 to 10000 G."));
+  if (!isnan (even_floor))
+    study->even_floor_gauss = even_floor > 0 ? even_floor : NAN;
   if (with_hints)
     study->sieve.with_hints = TRUE;
   if (words.name != NULL)
@@ -112,7 +119,7 @@ tf_verb_laws (int argc, char **argv)
       g_free (study->name);
       study->name = g_strdup (words.name);
     }
-  if (bundle != NULL && (floors || words.save_study != NULL || words.keep_study || words.keep_edition != NULL || words.against != NULL || words.bundle != NULL))
+  if (bundle != NULL && (floors || !isnan (even_floor) || words.save_study != NULL || words.keep_study || words.keep_edition != NULL || words.against != NULL || words.bundle != NULL))
     return tf_batch_usage ("laws", _ ("A study bundle has no ledger: nothing can be kept, measured or compared with an edition there."));
   if (bundle != NULL)
     return tf_batch_laws_bundle (argv[1], bundle, study, json, &words);

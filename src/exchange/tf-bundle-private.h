@@ -29,4 +29,4 @@ extern const TfColumn tf_bundle_columns[];
 
 /** tf_bundle_add_row: row @k of a table read from sample.csv; NULL, or (transfer full) what is wrong
  * with it. */
-char *tf_bundle_add_row (TfStudySource *source, const TfCells *table, guint k);
+char *tf_bundle_add_row (TfStudyTaken *taken, const TfCells *table, guint k);

@@ -21,7 +21,7 @@ tf_bundle_free (TfBundle *bundle)
   if (bundle == NULL)
     return;
   g_clear_pointer (&bundle->study, tf_study_free);
-  g_clear_pointer (&bundle->source, tf_study_source_free);
+  g_clear_pointer (&bundle->taken, tf_study_taken_unref);
   g_clear_pointer (&bundle->laws, json_node_unref);
   g_free (bundle->program);
   g_free (bundle);
@@ -120,9 +120,10 @@ check_format (JsonObject *versions, const char *path, GError **error)
   return FALSE;
 }
 
-static void
-read_scales (GPtrArray *scales, JsonObject *versions)
+static GPtrArray *
+read_scales (JsonObject *versions)
 {
+  GPtrArray *scales = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_kept_scale_free);
   JsonArray *array = tf_json_member_array (versions, "instrument_scales");
   for (guint k = 0; array != NULL && k < json_array_get_length (array); k++)
     {
@@ -138,10 +139,11 @@ read_scales (GPtrArray *scales, JsonObject *versions)
       scale->sigma = tf_json_member_number (from, "sigma");
       g_ptr_array_add (scales, scale);
     }
+  return scales;
 }
 
 static gboolean
-read_rows (TfStudySource *source, const TfCells *table, const char *path, GError **error)
+read_rows (TfStudyTaken *taken, const TfCells *table, const char *path, GError **error)
 {
   const TfFault *fault
       = table->faults->len > 0 ? &g_array_index (table->faults, TfFault, 0) : NULL;
@@ -149,7 +151,7 @@ read_rows (TfStudySource *source, const TfCells *table, const char *path, GError
   guint place = fault != NULL ? fault->place : 0;
   for (guint k = 0; wrong == NULL && k < table->rows->len; k++)
     {
-      wrong = tf_bundle_add_row (source, table, k);
+      wrong = tf_bundle_add_row (taken, table, k);
       place = g_array_index (table->places, guint, k);
     }
   if (wrong == NULL && table->rows->len == 0)
@@ -168,7 +170,7 @@ read_sample (TfBundle *bundle, const TfZip *zip, const char *path, GError **erro
   g_autofree char *text = dup_file (zip, TF_BUNDLE_SAMPLE, path, error);
   g_autoptr (TfCells) table
       = text != NULL ? tf_cells_read_text (text, strlen (text), path, error) : NULL;
-  return table != NULL && read_rows (bundle->source, table, path, error);
+  return table != NULL && read_rows (bundle->taken, table, path, error);
 }
 
 static gboolean
@@ -188,8 +190,7 @@ read_parts (TfBundle *bundle, const TfZip *zip, JsonObject *versions, const char
       || !read_study (bundle, zip, path, error))
     return FALSE;
   bundle->program = g_strdup (tf_json_member_string (versions, "program"));
-  bundle->source = tf_study_source_new (bundle->study->even_floor_gauss);
-  read_scales (bundle->source->scales, versions);
+  bundle->taken = tf_study_taken_new (bundle->study->even_floor_gauss, read_scales (versions));
   bundle->laws = read_object (zip, TF_BUNDLE_LAWS, path, error);
   return bundle->laws != NULL && read_sample (bundle, zip, path, error);
 }

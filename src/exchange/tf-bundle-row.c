@@ -182,18 +182,17 @@ yes_or_unknown (JsonObject *flat, const char *name)
   return isnan (value) ? -1 : value > 0;
 }
 
-static void
-add_sample_row (TfStudySource *source, const TfRow *row, JsonObject *flat)
+static TfSampleRow
+sample_row_of (const TfRow *row, JsonObject *flat)
 {
   TfSampleRow s;
   tf_study_row (row, &s);
-  s.row = source->rows->len - 1;
   s.region = (guint32)tf_json_member_number (flat, "region_number");
   s.passage = (guint32)tf_json_member_number (flat, "passage_number");
   s.witnesses_differ = yes_or_unknown (flat, "witnesses_differ");
   s.straddles = yes_or_unknown (flat, "straddles");
   s.born = yes_or_unknown (flat, "born_on_disk");
-  tf_sample_add (source->all, &s);
+  return s;
 }
 
 static gboolean
@@ -204,7 +203,7 @@ is_number (JsonObject *flat, const char *name)
 }
 
 char *
-tf_bundle_add_row (TfStudySource *source, const TfCells *table, guint k)
+tf_bundle_add_row (TfStudyTaken *taken, const TfCells *table, guint k)
 {
   char *wrong = NULL;
   g_autoptr (JsonObject) flat = read_flat (table, k, &wrong);
@@ -220,11 +219,10 @@ tf_bundle_add_row (TfStudySource *source, const TfCells *table, guint k)
   TfRow *row = tf_row_new_flat (tf_json_node_dup_text (node, FALSE),
                                 time != NULL ? tf_time_read (time) : TF_TIME_UNKNOWN);
   double place = tf_json_member_number (flat, "source_row");
-  g_ptr_array_add (source->rows, row);
   row->origin = origin;
   row->outside->place = place > 0 ? (guint)place : 0;
   if (strcmp (origin, "outside") != 0)
     make_own (row, flat);
-  add_sample_row (source, row, flat);
+  tf_study_taken_add (taken, row, sample_row_of (row, flat));
   return NULL;
 }

@@ -20,16 +20,16 @@
 /* -- the rows ---------------------------------------------------------------------------------- */
 
 static GArray *
-collect_rows (const TfStudy *study, const TfFindings *findings, const TfStudySource *source)
+collect_rows (const TfStudy *study, const TfFindings *findings, const TfStudyTaken *taken)
 {
-  guint n = tf_sample_get_n (source->all);
+  const TfSample *all = tf_study_taken_get_sample (taken);
+  guint n = tf_study_taken_get_n (taken);
   GArray *rows = g_array_sized_new (FALSE, TRUE, sizeof (TfBundleRow), n);
   g_autoptr (TfDivides) divides = study->divides != NULL ? tf_divides_ref (study->divides)
                                                          : tf_divides_new (&study->divide);
   for (guint k = 0; k < n; k++)
     {
-      TfBundleRow row = { .flat = { .row = g_ptr_array_index (source->rows, k),
-                                    .sample = *tf_sample_get (source->all, k) } };
+      TfBundleRow row = { .flat = { .row = tf_study_taken_get_row (taken, k), .sample = *tf_sample_get (all, k) } };
       row.flat.verdict = tf_verdict_judge (&row.flat.sample, divides, &study->verdict);
       g_array_append_val (rows, row);
     }
@@ -44,9 +44,9 @@ collect_rows (const TfStudy *study, const TfFindings *findings, const TfStudySou
 }
 
 static char *
-dup_sample (const TfStudy *study, const TfFindings *findings, const TfStudySource *source)
+dup_sample (const TfStudy *study, const TfFindings *findings, const TfStudyTaken *taken)
 {
-  g_autoptr (GArray) rows = collect_rows (study, findings, source);
+  g_autoptr (GArray) rows = collect_rows (study, findings, taken);
   g_autoptr (GArray) facts = tf_facts_new (rows, study, "the ledger that the study was run on");
   g_auto (TfTableOut) table = { 0 };
   tf_table_out_init (&table, "sample", TRUE, tf_bundle_columns, rows, facts);
@@ -106,7 +106,7 @@ build_scales (JsonBuilder *builder, const GPtrArray *scales)
 }
 
 static char *
-dup_versions (const TfZip *zip, const TfStudySource *source)
+dup_versions (const TfZip *zip, const TfStudyTaken *taken)
 {
   g_autoptr (JsonBuilder) builder = json_builder_new ();
   const GArray *files = tf_zip_get_files (zip);
@@ -115,7 +115,7 @@ dup_versions (const TfZip *zip, const TfStudySource *source)
   tf_json_string (builder, "program", "Tiltfield " TF_VERSION);
   tf_json_string (builder, "statistics", "GSL " GSL_VERSION);
   tf_json_string (builder, "draws", DRAWS);
-  build_scales (builder, source->scales);
+  build_scales (builder, tf_study_taken_get_scales (taken));
   json_builder_set_member_name (builder, "sha256");
   json_builder_begin_object (builder);
   for (guint k = 0; k < files->len; k++)
@@ -137,15 +137,15 @@ take_text (TfZip *zip, const char *name, char *text)
 
 gboolean
 tf_bundle_write (const char *path, const TfStudy *study, const TfFindings *findings,
-                 const TfStudySource *source, GError **error)
+                 const TfStudyTaken *taken, GError **error)
 {
-  g_return_val_if_fail (path != NULL && study != NULL && findings != NULL && source != NULL, FALSE);
+  g_return_val_if_fail (path != NULL && study != NULL && findings != NULL && taken != NULL, FALSE);
   g_autoptr (TfZip) zip = tf_zip_new ();
   take_text (zip, TF_BUNDLE_STUDY, tf_study_dup_text (study));
-  take_text (zip, TF_BUNDLE_SAMPLE, dup_sample (study, findings, source));
+  take_text (zip, TF_BUNDLE_SAMPLE, dup_sample (study, findings, taken));
   take_text (zip, TF_BUNDLE_LAWS, dup_laws (study, findings));
   if (!add_figures (zip, study, findings, error))
     return FALSE;
-  take_text (zip, TF_BUNDLE_VERSIONS, dup_versions (zip, source));
+  take_text (zip, TF_BUNDLE_VERSIONS, dup_versions (zip, taken));
   return tf_zip_write (zip, path, error);
 }

@@ -16,21 +16,21 @@
  * Equal input gives equal bytes: no time of writing stands in it.
  */
 
-#include "tf-study-file-rows.h"
+#include "tf-study-take.h"
 
 G_BEGIN_DECLS
 
 /** tf_bundle_is: whether a file begins as a zip does. */
 gboolean tf_bundle_is (const char *path);
 
-/** tf_bundle_write: all of the file or none of it. @findings: of @study, run on the rows of @source. */
+/** tf_bundle_write: all of the file or none of it. @findings: of @study, run on the rows of @taken. */
 gboolean tf_bundle_write (const char *path, const TfStudy *study, const TfFindings *findings,
-                          const TfStudySource *source, GError **error);
+                          const TfStudyTaken *taken, GError **error);
 
 typedef struct
 {
   TfStudy *study;
-  TfStudySource *source;
+  TfStudyTaken *taken;
   JsonNode *laws;  /* the bundle's own numbers */
   char *program;   /* version that wrote it */
 } TfBundle;

@@ -40,7 +40,7 @@ tf_export_rows (TfLedger *ledger, const TfStudy *study, gboolean with_hints, GPt
                 GError **error)
 {
   TfRowQuery query = { .marks = TRUE, .hints = with_hints, .outside = TRUE, .complexity = TRUE };
-  GPtrArray *found = tf_study_rows (ledger, &query, tf_study_even_floor (ledger, NULL), error);
+  GPtrArray *found = tf_study_rows (ledger, &query, tf_study_floor (study, ledger), error);
   if (found == NULL)
     return NULL;
   g_autoptr (TfDivides) divides

@@ -12,7 +12,6 @@
 #include "tf-frame-write.h"
 #include "tf-stamp.h"
 #include "tf-study-again.h"
-#include "tf-study-file-rows.h"
 
 /* Stamps of a study's picks as FITS files. */
 
@@ -149,21 +148,21 @@ compare_frames (gconstpointer a, gconstpointer b)
 static GPtrArray *
 read_picks (TfLedger *ledger, const TfStudy *study, TfStampsSum *sum, GError **error)
 {
-  g_autoptr (TfStudySource) source = tf_study_source_read (study, ledger, error);
-  if (source == NULL)
+  const TfStretch all = { NAN, NAN, NAN, NAN };
+  g_autoptr (TfStudyTaken) taken = tf_study_take (study, ledger, error);
+  if (taken == NULL)
     return NULL;
-  g_autoptr (TfStudy) plain = tf_study_copy (study);
-  plain->hale.draws = plain->joy.draws = plain->drift.draws = 0;
-  g_autoptr (TfFindings) findings = tf_study_run_source (plain, source);
+  g_autoptr (TfFindings) findings
+      = tf_study_again (taken, study, &all, TF_FINDINGS_QUICK, NULL, NULL, NULL);
   g_autoptr (GPtrArray) picks = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
   for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
     {
-      const TfRow *row = g_ptr_array_index (source->rows, tf_sample_get (findings->sample, k)->row);
-      TfRow *whole = row->outside == NULL ? tf_ledger_row (ledger, row->mark, row->is_hint, error) : NULL;
-      sum->n_outside += row->outside != NULL;
+      gint64 mark = findings->marks[k]; /* of a hint negative; 0: in no frame here */
+      TfRow *whole = mark != 0 ? tf_ledger_row (ledger, ABS (mark), mark < 0, error) : NULL;
+      sum->n_outside += mark == 0;
       if (whole != NULL)
         g_ptr_array_add (picks, whole);
-      else if (row->outside == NULL)
+      else if (mark != 0)
         return NULL;
     }
   g_ptr_array_sort (picks, compare_frames);

@@ -6,7 +6,7 @@
 /* The same rows under other choices: what the window asks while somebody turns the knobs. A ledger's
  * rows are read once; sieve, sampling rule, divides and methods then act on them in memory. */
 
-#include "tf-study.h"
+#include "tf-study-take.h"
 
 G_BEGIN_DECLS
 
@@ -21,15 +21,6 @@ gboolean tf_stretch_is_same (const TfStretch *a, const TfStretch *b);
 
 /** tf_study_copy: (transfer full) */
 TfStudy *tf_study_copy (const TfStudy *study);
-
-/** TfStudyTaken: rows as they were read; immutable, reference counted, any thread may use it. */
-typedef struct _TfStudyTaken TfStudyTaken;
-TfStudyTaken *tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error);
-TfStudyTaken *tf_study_taken_ref (TfStudyTaken *taken);
-void tf_study_taken_unref (TfStudyTaken *taken);
-/** tf_study_taken_serves: whether @study needs no other rows than these. */
-gboolean tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study);
-guint tf_study_taken_get_n (const TfStudyTaken *taken);
 
 /** TfFindingsDepth: how much is worked out. */
 typedef enum
@@ -48,7 +39,5 @@ typedef enum
 TfFindings *tf_study_again (const TfStudyTaken *taken, const TfStudy *study,
                             const TfStretch *stretch, TfFindingsDepth depth, TfLedger *ledger,
                             const TfFindings *before, const TfCancel *cancel);
-
-G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfStudyTaken, tf_study_taken_unref)
 
 G_END_DECLS

@@ -54,6 +54,13 @@ tf_study_even_floor (TfLedger *ledger, GError **error)
   return noises != NULL ? tf_study_floor_of_noises (noises) : NAN;
 }
 
+double
+tf_study_floor (const TfStudy *study, TfLedger *ledger)
+{
+  gboolean own = study != NULL && study->even_floor_gauss > 0;
+  return own ? study->even_floor_gauss : tf_study_even_floor (ledger, NULL);
+}
+
 GPtrArray *
 tf_study_rows (TfLedger *ledger, const TfRowQuery *query, double floor_gauss, GError **error)
 {

@@ -39,6 +39,7 @@ struct _TfStudyTaken
   TfSample *all;
   GPtrArray *scales;
   double floor;
+  gboolean own_floor; /* the study's, not the ledger's */
   gboolean with_hints, with_scales;
   /* Without whole rows: those that lack the even floor a fifth lower and higher; those not of their own
    * measure; hints of the ledger, taken or not. */
@@ -103,10 +104,6 @@ TfSample *tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const T
 void tf_study_add_cautions (TfFindings *findings, const TfStudy *study, const TfStudyRows *rows);
 /** tf_study_copy_cautions: those of the same findings under other divides. */
 void tf_study_copy_cautions (const TfNotes *before, const TfStudy *study, TfNotes *out);
-/** tf_study_read_rows: (transfer full): what the study takes of a ledger; an error when that is
- * nothing. */
-GPtrArray *
-tf_study_read_rows (const TfStudy *study, TfLedger *ledger, double floor, GError **error);
 /** tf_study_run_rows: (transfer full): sieve, sampling rule, verdicts and laws; @what_if: and the
  * other choices. */
 TfFindings *tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger,

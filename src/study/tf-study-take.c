@@ -200,12 +200,10 @@ tf_study_needs_whole_rows (const TfStudy *study)
 }
 
 static gboolean
-take_rows (TfStudyTaken *taken, const TfStudy *study, TfLedger *ledger, GError **error)
+take_whole_rows (TfStudyTaken *taken, TfLedger *ledger, GError **error)
 {
-  if (!tf_study_needs_whole_rows (study) && tf_ledger_has_briefs (ledger))
-    return take_briefs (taken, ledger, error);
   const TfRowQuery query = { .marks = TRUE,
-                             .hints = study->sieve.with_hints,
+                             .hints = taken->with_hints,
                              .outside = TRUE,
                              .no_outlines = TRUE };
   taken->rows = tf_study_rows (ledger, &query, taken->floor, error);
@@ -213,20 +211,39 @@ take_rows (TfStudyTaken *taken, const TfStudy *study, TfLedger *ledger, GError *
   return taken->all != NULL;
 }
 
-TfStudyTaken *
-tf_study_take_with (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
+/* With what the scales of instruments say, or without. */
+static TfStudyTaken *
+take (const TfStudy *study, TfLedger *ledger, double floor, gboolean whole, GError **error)
 {
   g_autoptr (TfStudyTaken) taken = g_atomic_rc_box_new0 (TfStudyTaken);
   taken->floor = floor;
+  taken->own_floor = study->even_floor_gauss > 0;
   taken->with_hints = study->sieve.with_hints;
-  taken->with_scales = study->sieve.with_scales;
   taken->scales = tf_ledger_scales (ledger, error);
-  if (taken->scales == NULL || !take_rows (taken, study, ledger, error))
+  whole = whole || tf_study_needs_whole_rows (study) || !tf_ledger_has_briefs (ledger);
+  if (taken->scales == NULL
+      || !(whole ? take_whole_rows (taken, ledger, error) : take_briefs (taken, ledger, error)))
     return NULL;
-  TfStudyRows rows = tf_study_taken_rows (taken);
-  if (taken->with_scales)
-    tf_study_scale (taken->all, &rows, TRUE);
   return g_steal_pointer (&taken);
+}
+
+static void
+scale (TfStudyTaken *taken, gboolean on)
+{
+  const TfStudyRows rows = tf_study_taken_rows (taken);
+  if (!on == !taken->with_scales)
+    return;
+  tf_study_scale (taken->all, &rows, on);
+  taken->with_scales = on;
+}
+
+TfStudyTaken *
+tf_study_take_with (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
+{
+  TfStudyTaken *taken = take (study, ledger, floor, FALSE, error);
+  if (taken != NULL)
+    scale (taken, study->sieve.with_scales);
+  return taken;
 }
 
 TfStudyTaken *
@@ -234,10 +251,42 @@ tf_study_take (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
   g_autoptr (TfStudyTaken) taken
-      = tf_study_take_with (study, ledger, tf_study_even_floor (ledger, NULL), error);
+      = tf_study_take_with (study, ledger, tf_study_floor (study, ledger), error);
   if (taken == NULL || tf_study_complain_empty (study, tf_sample_get_n (taken->all), ledger, error))
     return NULL;
   return g_steal_pointer (&taken);
+}
+
+TfStudyTaken *
+tf_study_take_whole (const TfStudy *study, TfLedger *ledger, GError **error)
+{
+  g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
+  g_autoptr (TfStudyTaken) taken
+      = take (study, ledger, tf_study_floor (study, ledger), TRUE, error);
+  if (taken == NULL || tf_study_complain_empty (study, tf_sample_get_n (taken->all), ledger, error))
+    return NULL;
+  return g_steal_pointer (&taken);
+}
+
+/* -- what was taken ---------------------------------------------------------------------------- */
+
+TfStudyTaken *
+tf_study_taken_new (double floor_gauss, GPtrArray *scales)
+{
+  TfStudyTaken *taken = g_atomic_rc_box_new0 (TfStudyTaken);
+  taken->rows = g_ptr_array_new_with_free_func ((GDestroyNotify)tf_row_free);
+  taken->all = tf_sample_new ();
+  taken->scales = scales;
+  taken->floor = floor_gauss;
+  return taken;
+}
+
+void
+tf_study_taken_add (TfStudyTaken *taken, TfRow *row, TfSampleRow sample)
+{
+  sample.row = taken->rows->len;
+  g_ptr_array_add (taken->rows, row);
+  tf_sample_add (taken->all, &sample);
 }
 
 TfStudyRows
@@ -276,7 +325,10 @@ tf_study_taken_unref (TfStudyTaken *taken)
 gboolean
 tf_study_taken_serves (const TfStudyTaken *taken, const TfStudy *study)
 {
-  return !taken->with_hints == !study->sieve.with_hints
+  gboolean floor = study->even_floor_gauss > 0
+                       ? fabs (taken->floor - study->even_floor_gauss) < 1e-9 * taken->floor
+                       : !taken->own_floor;
+  return floor && !taken->with_hints == !study->sieve.with_hints
          && !taken->with_scales == !study->sieve.with_scales
          && (taken->rows != NULL || !tf_study_needs_whole_rows (study));
 }
@@ -285,4 +337,51 @@ guint
 tf_study_taken_get_n (const TfStudyTaken *taken)
 {
   return tf_sample_get_n (taken->all);
+}
+
+const TfSample *
+tf_study_taken_get_sample (const TfStudyTaken *taken)
+{
+  return taken->all;
+}
+
+const TfRow *
+tf_study_taken_get_row (const TfStudyTaken *taken, guint k)
+{
+  return taken->rows != NULL ? g_ptr_array_index (taken->rows, k) : NULL;
+}
+
+const GPtrArray *
+tf_study_taken_get_scales (const TfStudyTaken *taken)
+{
+  return taken->scales;
+}
+
+/* -- the laws of it ---------------------------------------------------------------------------- */
+
+/* The same rows, scaled as the study asks. */
+static TfStudyTaken *
+taken_for (const TfStudy *study, const TfStudyTaken *taken)
+{
+  if (!taken->with_scales == !study->sieve.with_scales)
+    return tf_study_taken_ref ((TfStudyTaken *)taken);
+  TfStudyTaken *other = g_atomic_rc_box_new0 (TfStudyTaken);
+  *other = *taken;
+  other->rows = taken->rows != NULL ? g_ptr_array_ref (taken->rows) : NULL;
+  other->facts = taken->facts != NULL ? g_array_ref (taken->facts) : NULL;
+  other->scales = g_ptr_array_ref (taken->scales);
+  other->all = tf_sample_new_sized (tf_sample_get_n (taken->all));
+  for (guint k = 0; k < tf_sample_get_n (taken->all); k++)
+    tf_sample_add (other->all, tf_sample_get (taken->all, k));
+  scale (other, study->sieve.with_scales);
+  return other;
+}
+
+TfFindings *
+tf_study_run_taken (const TfStudy *study, const TfStudyTaken *taken, TfLedger *ledger)
+{
+  g_return_val_if_fail (study != NULL && taken != NULL, NULL);
+  g_autoptr (TfStudyTaken) own = taken_for (study, taken);
+  const TfStudyRows rows = tf_study_taken_rows (own);
+  return tf_study_run_rows (study, &rows, ledger, own->floor, TRUE);
 }

@@ -354,24 +354,10 @@ tf_study_sample_rows (const GPtrArray *rows)
   return all;
 }
 
-GPtrArray *
-tf_study_read_rows (const TfStudy *study, TfLedger *ledger, double floor, GError **error)
-{
-  const TfRowQuery query = { .marks = TRUE, .hints = study->sieve.with_hints, .outside = TRUE,
-                             .no_outlines = TRUE };
-  g_autoptr (GPtrArray) found = tf_study_rows (ledger, &query, floor, error);
-  if (found == NULL || tf_study_complain_empty (study, found->len, ledger, error))
-    return NULL;
-  return g_steal_pointer (&found);
-}
-
 TfFindings *
 tf_study_run (const TfStudy *study, TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (study != NULL && ledger != NULL, NULL);
   g_autoptr (TfStudyTaken) taken = tf_study_take (study, ledger, error);
-  if (taken == NULL)
-    return NULL;
-  const TfStudyRows rows = tf_study_taken_rows (taken);
-  return tf_study_run_rows (study, &rows, ledger, taken->floor, TRUE);
+  return taken != NULL ? tf_study_run_taken (study, taken, ledger) : NULL;
 }

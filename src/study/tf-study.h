@@ -65,7 +65,8 @@ typedef struct
   TfSieveParams sieve;
   /* TfCondition (tf-sieve.h): beside what the sieve's options say, on marks and on picks. */
   GPtrArray *mark_conditions, *region_conditions;
-  double even_floor_gauss; /* as it was worked out when the study was kept; NaN: not yet */
+  /* Kept with it: marks are read as measured with this floor, whatever frames come to the ledger later. NaN: the ledger's. */
+  double even_floor_gauss;
   TfSamplingParams sampling;
   TfVerdictParams verdict;
   TfDivideParams divide;
@@ -159,6 +160,8 @@ typedef struct
 /** tf_study_even_floor: the greatest, over instruments, of the median over that instrument's frames
  * of 3 sigma (mu 0.5)/0.5, rounded to a whole gauss so that one more frame seldom moves it; G, NaN without frames. */
 double tf_study_even_floor (TfLedger *ledger, GError **error);
+/** tf_study_floor: the even floor of a study on a ledger: its own, else the ledger's. @study: (nullable) */
+double tf_study_floor (const TfStudy *study, TfLedger *ledger);
 /** tf_study_rows: ledger rows with the measures made with that even floor where they are there (intake makes
  * them), else with their own. */
 GPtrArray *

@@ -21,7 +21,7 @@ typedef struct
   TfLedger *ledger;
   TfStudy *study;
   TfFindings *findings;
-  TfStudySource *source;
+  TfStudyTaken *taken;
 } Fixture;
 
 /* Two hemispheres, one row in nine against Hale's law; a few cells missing, a text with commas. */
@@ -51,10 +51,10 @@ run (Fixture *f)
 {
   g_autoptr (GError) error = NULL;
   g_clear_pointer (&f->findings, tf_findings_free);
-  g_clear_pointer (&f->source, tf_study_source_free);
+  g_clear_pointer (&f->taken, tf_study_taken_unref);
   f->findings = tf_study_run (f->study, f->ledger, &error);
   g_assert_no_error (error);
-  f->source = tf_study_source_read (f->study, f->ledger, &error);
+  f->taken = tf_study_take_whole (f->study, f->ledger, &error);
   g_assert_no_error (error);
 }
 
@@ -85,7 +85,7 @@ tear_down (Fixture *f, gconstpointer data)
   tf_ledger_close (f->ledger);
   tf_study_free (f->study);
   tf_findings_free (f->findings);
-  tf_study_source_free (f->source);
+  tf_study_taken_unref (f->taken);
   g_autoptr (GDir) dir = g_dir_open (f->folder, 0, NULL);
   while ((name = g_dir_read_name (dir)) != NULL)
     {
@@ -102,7 +102,7 @@ static void
 write_bundle (Fixture *f)
 {
   g_autoptr (GError) error = NULL;
-  gboolean good = tf_bundle_write (f->path, f->study, f->findings, f->source, &error);
+  gboolean good = tf_bundle_write (f->path, f->study, f->findings, f->taken, &error);
   g_assert_no_error (error);
   g_assert_true (good && tf_bundle_is (f->path));
 }
@@ -126,8 +126,8 @@ test_same (Fixture *f, gconstpointer data)
   write_bundle (f);
   g_autoptr (TfBundle) bundle = tf_bundle_read (f->path, &error);
   g_assert_no_error (error);
-  g_assert_cmpuint (bundle->source->rows->len, ==, 90);
-  g_autoptr (TfFindings) again = tf_study_run_source (bundle->study, bundle->source);
+  g_assert_cmpuint (tf_study_taken_get_n (bundle->taken), ==, 90);
+  g_autoptr (TfFindings) again = tf_study_run_taken (bundle->study, bundle->taken, NULL);
   g_autoptr (GPtrArray) left = NULL;
   g_autoptr (GPtrArray) differences = tf_bundle_differences (bundle, bundle->study, again, &left);
   for (guint k = 0; k < differences->len; k++)
@@ -162,7 +162,7 @@ test_other_choice (Fixture *f, gconstpointer data)
   g_autoptr (TfBundle) bundle = tf_bundle_read (f->path, &error);
   g_assert_no_error (error);
   bundle->study->sieve.cmd_max_deg = 20;
-  g_autoptr (TfFindings) again = tf_study_run_source (bundle->study, bundle->source);
+  g_autoptr (TfFindings) again = tf_study_run_taken (bundle->study, bundle->taken, NULL);
   g_autoptr (GPtrArray) left = NULL;
   g_autoptr (GPtrArray) differences = tf_bundle_differences (bundle, bundle->study, again, &left);
   g_ptr_array_add (differences, NULL);
@@ -284,7 +284,7 @@ test_rows (Fixture *f, gconstpointer data)
   g_autoptr (GError) error = NULL;
   g_autoptr (TfBundle) bundle = tf_bundle_read (f->path, &error);
   g_assert_no_error (error);
-  g_autoptr (TfFindings) again = tf_study_run_source (bundle->study, bundle->source);
+  g_autoptr (TfFindings) again = tf_study_run_taken (bundle->study, bundle->taken, NULL);
   g_autoptr (GPtrArray) left = NULL;
   g_autoptr (GPtrArray) differences = tf_bundle_differences (bundle, bundle->study, again, &left);
   g_assert_cmpuint (differences->len, >, 0);

@@ -59,7 +59,7 @@ judge_bundle (const char *path)
   bundle->study->hale.draws = MIN (bundle->study->hale.draws, 3);
   bundle->study->joy.draws = MIN (bundle->study->joy.draws, 3);
   bundle->study->drift.draws = MIN (bundle->study->drift.draws, 3);
-  g_autoptr (TfFindings) findings = tf_study_run_source (bundle->study, bundle->source);
+  g_autoptr (TfFindings) findings = tf_study_run_taken (bundle->study, bundle->taken, NULL);
   g_autoptr (GPtrArray) left = NULL;
   g_autoptr (GPtrArray) differences = tf_bundle_differences (bundle, bundle->study, findings, &left);
   for (guint k = 0; k < differences->len; k++)
@@ -91,8 +91,8 @@ make_bundle (const char *folder, const char *path)
   g_autoptr (TfStudy) study = tf_study_new_default ();
   study->hale.draws = study->joy.draws = study->drift.draws = 3;
   g_autoptr (TfFindings) findings = tf_study_run (study, ledger, NULL);
-  g_autoptr (TfStudySource) source = tf_study_source_read (study, ledger, NULL);
-  fuzz_must (tf_bundle_write (path, study, findings, source, NULL), "the bundle is written");
+  g_autoptr (TfStudyTaken) taken = tf_study_take_whole (study, ledger, NULL);
+  fuzz_must (tf_bundle_write (path, study, findings, taken, NULL), "the bundle is written");
   g_clear_pointer (&ledger, tf_ledger_close);
   g_unlink (ledger_path);
   char *bytes = NULL;

@@ -9,7 +9,7 @@
 #include "tf-check.h"
 #include "tf-ledger-outside.h"
 #include "tf-sieve.h"
-#include "tf-study-again.h"
+#include "tf-study-take.h"
 
 /* The measure of a mark's own outline with that even floor, by the method that belongs to its own. */
 static void
@@ -238,6 +238,17 @@ test_floors_move_the_rows (void)
         seen++;
       }
   g_assert_cmpuint (seen, ==, G_N_ELEMENTS (floors));
+  /* a study that keeps a floor has it however noisy the frames are that come later; the ledger's moves */
+  g_autoptr (TfStudyTaken) by_ledger = tf_study_take (study, t.ledger, NULL);
+  for (guint k = 0; k < 3; k++)
+    test_study_frame (&t, "2014-06-01T00:00:00Z", "TEST-B", 20);
+  study->even_floor_gauss = floors[2].gauss;
+  g_assert_false (tf_study_taken_serves (by_ledger, study));
+  g_autoptr (TfFindings) kept = tf_study_run (study, t.ledger, NULL);
+  tf_check_near ("the ledger's", tf_study_even_floor (t.ledger, NULL), 120, 0);
+  tf_check_near ("the study's own", kept->even_floor_gauss, floors[2].gauss, 0);
+  tf_check_near ("its slope", g_array_index (kept->joy, TfJoyFit, kept->joy->len - 1).slope, floors[2].slope, 1e-12);
+  g_assert_cmpuint (kept->n_other_floor, ==, 0);
 }
 
 void
