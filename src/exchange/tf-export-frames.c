@@ -15,12 +15,6 @@
 #define F ((const TfFrameRow *)*r)
 #define G (F->info->geometry)
 
-static char *
-dup_time (TfTime time)
-{
-  return tf_time_is_known (time) ? tf_time_dup_iso (time, 3) : g_strdup ("");
-}
-
 static gboolean
 is_disk (const TfFrameRow *f)
 {
@@ -39,7 +33,7 @@ NUMBER (get_hdu, F->hdu)
 NUMBER (get_plane, F->plane)
 TAKE (get_kind, g_strdup (tf_kind_name (F->info->kind)))
 TAKE (get_role, g_strdup (tf_role_name (F->info->role)))
-TAKE (get_time, dup_time (F->info->time))
+TIME (get_time, F->info->time)
 TAKE (get_time_source, g_strdup (F->info->time_source))
 NUMBER (get_span, F->info->time_span_s)
 TAKE (get_instrument, g_strdup (F->info->instrument))

@@ -25,12 +25,6 @@ typedef struct
 #include "tf-columns-table.h"
 
 static char *
-dup_time (TfTime time)
-{
-  return tf_time_is_known (time) ? tf_time_dup_iso (time, 3) : g_strdup ("");
-}
-
-static char *
 dup_id (const TfPassageRow *passage)
 {
   return g_strdup (passage != NULL ? passage->content_id : "");
@@ -42,8 +36,8 @@ dup_end (const TfPassageRow *passage, gboolean born)
   return g_strdup (passage != NULL ? tf_end_name (born ? passage->born : passage->ended) : "");
 }
 
-TAKE (get_first, dup_time (r->first))
-TAKE (get_last, dup_time (r->last))
+TIME (get_first, r->first)
+TIME (get_last, r->last)
 NUMBER (get_frames, r->n_frames)
 NUMBER (get_marks, r->n_marks)
 NUMBER (get_hints, r->n_hints)

@@ -16,6 +16,7 @@
   }
 #define TAKE(name, expression)   GETTER (char *, name, expression)
 #define NUMBER(name, expression) GETTER (double, name, expression)
+#define TIME(name, time)         TAKE (name, tf_time_is_known (time) ? tf_time_dup_iso (time, 3) : g_strdup (""))
 
 #define NONE      "", ""
 #define DEG       "deg", "deg"
