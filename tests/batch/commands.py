@@ -12,17 +12,10 @@ import re
 import shutil
 import signal
 import subprocess
-import sys
-import tempfile
 import time
 import zipfile
 
-RUN, TOP = sys.argv[1], sys.argv[2]
-FRAMES = os.path.join(TOP, "data-demo", "frames")
-REAL = os.environ.get("TF_SHARED_DATA", os.path.join(TOP, "..", "shared", "data"))
-work = tempfile.mkdtemp(prefix="tiltfield-batch-")
-os.environ["XDG_STATE_HOME"] = os.path.join(work, "state")
-number = failed = 0
+from harness import call, document, finish, FRAMES, REAL, RUN, test, work
 
 INSPECT = """file hdu width height kind role ok refusal time time_source time_span observer instrument scale radius_mm
 radius_arcsec scale_arcsec north_angle_deg projection unit field noise_gauss noise_rings repairs cautions""".split()
@@ -48,35 +41,6 @@ cmd_deg stonyhurst_lon_deg carrington_lon_deg mu axis_bearing_deg axis_tilt_deg 
 separation_sigma_deg separation_mm compactness pieces leading_polarity leading_sure flux_unsigned_mx flux_positive_mx
 flux_negative_mx imbalance magnetic_area_msh cycle cycle_sure hale hale_reason class axial_dipole_gauss floor_gauss floor_kind
 cautions""".split()
-
-
-def test(sentence):
-    """Runs a function as one TAP line; an assertion or an exception fails it."""
-    def wrap(function):
-        global number, failed
-        number += 1
-        try:
-            why = function()
-        except Exception as error:  # every failure must become a line
-            failed += 1
-            print(f"not ok {number} - {sentence}\n#   {type(error).__name__}: {error}", flush=True)
-        else:
-            print(f"ok {number} - {sentence}" + (f" # SKIP {why}" if why else ""), flush=True)
-        return function
-    return wrap
-
-
-def call(*words, code=0, env=None, text=True):
-    done = subprocess.run([RUN, *words], stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=text, timeout=120,
-                          env=dict(os.environ, **(env or {})))
-    assert done.returncode == code, f"{' '.join(words)}: exit {done.returncode}, expected {code}: {done.stderr[-400:]}"
-    return done
-
-
-def document(*words, code=0, env=None):
-    def no_constant(name):
-        raise ValueError(f"{name} in JSON")
-    return json.loads(call(*words, code=code, env=env).stdout, parse_constant=no_constant)
 
 
 def has(found, keys):
@@ -560,6 +524,20 @@ def _():
     call("check", ledger)
 
 
+@test("a kept study keeps its even floor, whatever frames come later; --even-floor sets it, 0 gives the ledger's")
+def _():
+    ledger = os.path.join(work, "studies.ledger")
+    words = ["--json", "--with-hints", "--joy-draws", "0", "--hale-draws", "0"]
+    plain = document("laws", ledger, *words)["sample"]["even_floor_gauss"]
+    document("laws", ledger, *words, "--even-floor", "80", "--name", "floored", "--keep-study", "--person", "north")
+    call("fill", ledger, *few()[:2])
+    kept = document("laws", ledger, *words, "--study", "floored")["sample"]
+    assert (kept["even_floor_gauss"], kept["rows_with_other_floor"]) == (80, 0) and plain != 80 and kept["picks"] > 0, (plain, kept)
+    anew = document("laws", ledger, *words, "--study", "floored", "--even-floor", "0")["sample"]
+    assert anew["even_floor_gauss"] == document("laws", ledger, *words)["sample"]["even_floor_gauss"] != 80, anew
+    call("laws", ledger, "--even-floor", "-1", code=2)
+
+
 @test("an edition says which picks are new, gone and changed, when frames come and choices change")
 def _():
     ledger = os.path.join(work, "grown.ledger")
@@ -592,7 +570,7 @@ def _():
     assert call("laws", path).stdout.splitlines()[-2].startswith("same: ")
     other = document("laws", "--json", path, "--cmd-max", "30", code=1)["bundle"]
     assert not other["same"] and any("cmd-max" in line for line in other["differences"]), other
-    for words in (["--keep-study", "--person", "north"], ["--against", "one"], ["--bundle", path], ["--measure-floors"]):
+    for words in (["--keep-study", "--person", "north"], ["--against", "one"], ["--bundle", path], ["--measure-floors"], ["--even-floor", "50"]):
         call("laws", path, *words, code=2)
     with open(path, "rb") as file:
         whole = file.read()
@@ -623,6 +601,4 @@ def _():
     call("check", ledger)
 
 
-shutil.rmtree(work, ignore_errors=True)
-print(f"1..{number}")
-sys.exit(1 if failed else 0)
+finish()

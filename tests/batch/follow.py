@@ -8,40 +8,12 @@ import json
 import math
 import os
 import re
-import shutil
 import subprocess
-import sys
-import tempfile
 from datetime import datetime
 
-RUN, TOP = sys.argv[1], sys.argv[2]
-FRAMES = os.path.join(TOP, "data-demo", "frames")
-work = tempfile.mkdtemp(prefix="tiltfield-follow-")
-os.environ["XDG_STATE_HOME"] = os.path.join(work, "state")
-REAL = os.environ.get("TF_SHARED_DATA", os.path.join(TOP, "..", "shared", "data"))
+from harness import call, finish, FRAMES, REAL, RUN, test, work
+
 LEDGER = os.path.join(work, "demo.ledger")
-number = failed = 0
-
-
-def test(sentence):
-    def wrap(function):
-        global number, failed
-        number += 1
-        try:
-            why = function()
-        except Exception as error:  # every failure must become a line
-            failed += 1
-            print(f"not ok {number} - {sentence}\n#   {type(error).__name__}: {error}", flush=True)
-        else:
-            print(f"ok {number} - {sentence}" + (f" # SKIP {why}" if why else ""), flush=True)
-        return function
-    return wrap
-
-
-def call(*words, code=0):
-    done = subprocess.run([RUN, *words], stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True, timeout=120)
-    assert done.returncode == code, f"{' '.join(words)}: exit {done.returncode}, expected {code}: {done.stderr[-400:]}"
-    return done
 
 
 def follow(ledger):
@@ -291,6 +263,4 @@ def _():
         assert passage["frames"] == 2 and passage["hints"] == 2, (day, place, passage)
 
 
-shutil.rmtree(work)
-print(f"1..{number}")
-sys.exit(1 if failed else 0)
+finish()
