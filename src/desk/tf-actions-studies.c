@@ -11,6 +11,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-session-studies.h"
+#include "tf-study-task.h"
 #include "tf-widget-style.h"
 #include "tf-window-private.h"
 
@@ -139,15 +140,17 @@ file_chosen (GtkNativeDialog *dialog, int response, TfWindow *window)
   g_object_unref (dialog);
 }
 
-static void
-ask_file (TfWindow *window, const char *action, const char *title, gboolean save, const char *name)
+void
+tf_window_ask_study_file (TfWindow *window, const char *action, const char *title, const char *name,
+                          const char *kind, const char *pattern)
 {
+  gboolean save = name != NULL;
   GtkFileChooserNative *chooser = gtk_file_chooser_native_new (
       title, GTK_WINDOW (window), save ? GTK_FILE_CHOOSER_ACTION_SAVE : GTK_FILE_CHOOSER_ACTION_OPEN,
       save ? _ ("_Save") : _ ("_Open"), _ ("_Cancel"));
   g_autoptr (GtkFileFilter) filter = gtk_file_filter_new ();
-  gtk_file_filter_set_name (filter, _ ("Studies (JSON)"));
-  gtk_file_filter_add_pattern (filter, "*.json");
+  gtk_file_filter_set_name (filter, kind);
+  gtk_file_filter_add_pattern (filter, pattern);
   gtk_file_chooser_add_filter (GTK_FILE_CHOOSER (chooser), filter);
   if (save)
     gtk_file_chooser_set_current_name (GTK_FILE_CHOOSER (chooser), name);
@@ -164,7 +167,7 @@ ACTION (open_study)
   if (!has_person (window, action))
     return;
   if (*path == '\0')
-    ask_file (window, "open-study", _ ("Open a study"), FALSE, NULL);
+    tf_window_ask_study_file (window, "open-study", _ ("Open a study"), NULL, _ ("Studies (JSON)"), "*.json");
   else
     tf_session_open_study (session_of (window), file);
 }
@@ -176,7 +179,7 @@ ACTION (save_study)
   g_autofree char *name = g_strconcat (tf_session_get_study (session_of (window))->name, ".json", NULL);
   g_strdelimit (name, "/", '-');
   if (*path == '\0')
-    ask_file (window, "save-study", _ ("Save the study"), TRUE, name);
+    tf_window_ask_study_file (window, "save-study", _ ("Save the study"), name, _ ("Studies (JSON)"), "*.json");
   else
     tf_session_save_study (session_of (window), file);
 }
@@ -197,13 +200,32 @@ ACTION (keep_edition)
     tf_session_keep_edition (session_of (window), name);
 }
 
-ACTION (cancel_edition) { tf_session_cancel_edition (session_of (window)); }
+ACTION (cancel_edition) { tf_session_stop_study_task (session_of (window)); }
 
 ACTION (apply_what_if)
 {
   if (has_person (window, action)
       && !tf_session_apply_what_if (session_of (window), g_variant_get_string (value, NULL)))
     tf_window_say (window, _ ("No option of a study says that: it can be seen here, but not taken in."));
+}
+
+static gboolean
+append_short (const GMatchInfo *match, GString *result, gpointer data)
+{
+  g_autofree char *number = g_match_info_fetch (match, 0);
+  char text[G_ASCII_DTOSTR_BUF_SIZE];
+  g_string_append (result, g_ascii_formatd (text, sizeof text, "%.6g", g_ascii_strtod (number, NULL)));
+  return FALSE;
+}
+
+char *
+tf_laws_dup_lines (const GPtrArray *lines)
+{
+  g_autoptr (GRegex) number = g_regex_new ("-?[0-9]+\\.[0-9]{5,}(e[-+]?[0-9]+)?", 0, 0, NULL);
+  g_autoptr (GString) text = g_string_new (NULL);
+  for (guint k = 0; k < lines->len; k++)
+    g_string_append_printf (text, "%s%s", k > 0 ? "\n" : "", (char *)lines->pdata[k]);
+  return g_regex_replace_eval (number, text->str, -1, 0, 0, append_short, NULL, NULL);
 }
 
 static char *
@@ -213,27 +235,43 @@ dup_differences (const GPtrArray *differences, const char *trouble)
     return g_strdup (trouble);
   if (differences->len == 0)
     return g_strdup (_ ("They are the same."));
-  GString *text = g_string_new (NULL);
-  for (guint k = 0; k < differences->len; k++)
-    g_string_append_printf (text, "%s%s", k > 0 ? "\n" : "", (char *)differences->pdata[k]);
-  return g_string_free (text, FALSE);
+  return tf_laws_dup_lines (differences);
+}
+
+AdwMessageDialog *
+tf_window_show_lines (TfWindow *window, const char *heading, const char *body, const char *lines)
+{
+  GtkWidget *dialog = adw_message_dialog_new (GTK_WINDOW (window), heading, body);
+  GtkWidget *scrolled = gtk_scrolled_window_new (), *label = gtk_label_new (lines);
+  gtk_label_set_wrap (GTK_LABEL (label), TRUE);
+  gtk_label_set_wrap_mode (GTK_LABEL (label), PANGO_WRAP_WORD_CHAR);
+  gtk_label_set_selectable (GTK_LABEL (label), TRUE);
+  gtk_label_set_xalign (GTK_LABEL (label), 0);
+  gtk_label_set_yalign (GTK_LABEL (label), 0);
+  tf_window_set_lines (ADW_MESSAGE_DIALOG (dialog), scrolled, label);
+  adw_message_dialog_add_response (ADW_MESSAGE_DIALOG (dialog), "close", _ ("_Close"));
+  adw_message_dialog_set_close_response (ADW_MESSAGE_DIALOG (dialog), "close");
+  gtk_window_present (GTK_WINDOW (dialog));
+  return ADW_MESSAGE_DIALOG (dialog);
+}
+
+void
+tf_window_set_lines (AdwMessageDialog *dialog, GtkWidget *scrolled, GtkWidget *child)
+{
+  gtk_scrolled_window_set_child (GTK_SCROLLED_WINDOW (scrolled), child);
+  gtk_scrolled_window_set_policy (GTK_SCROLLED_WINDOW (scrolled), GTK_POLICY_NEVER, GTK_POLICY_AUTOMATIC);
+  gtk_scrolled_window_set_propagate_natural_height (GTK_SCROLLED_WINDOW (scrolled), TRUE);
+  gtk_scrolled_window_set_min_content_height (GTK_SCROLLED_WINDOW (scrolled), 60);
+  gtk_scrolled_window_set_max_content_height (GTK_SCROLLED_WINDOW (scrolled), 300);
+  gtk_widget_set_size_request (scrolled, 420, -1);
+  adw_message_dialog_set_extra_child (dialog, scrolled);
 }
 
 static void
 compared (const GPtrArray *differences, const char *trouble, gpointer window)
 {
   g_autofree char *text = dup_differences (differences, trouble);
-  GtkWidget *dialog = adw_message_dialog_new (GTK_WINDOW (window), _ ("What differs"), NULL);
-  GtkWidget *scrolled = gtk_scrolled_window_new (), *label = gtk_label_new (text);
-  gtk_label_set_wrap (GTK_LABEL (label), TRUE);
-  gtk_label_set_selectable (GTK_LABEL (label), TRUE);
-  gtk_label_set_xalign (GTK_LABEL (label), 0);
-  gtk_label_set_yalign (GTK_LABEL (label), 0);
-  gtk_scrolled_window_set_child (GTK_SCROLLED_WINDOW (scrolled), label);
-  gtk_widget_set_size_request (scrolled, 420, 260);
-  adw_message_dialog_set_extra_child (ADW_MESSAGE_DIALOG (dialog), scrolled);
-  adw_message_dialog_add_response (ADW_MESSAGE_DIALOG (dialog), "close", _ ("_Close"));
-  gtk_window_present (GTK_WINDOW (dialog));
+  tf_window_show_lines (window, _ ("What differs"), NULL, text);
 }
 
 static const char *
@@ -270,6 +308,17 @@ new_choice (const GPtrArray *editions, const char *before, const char *name)
   return choice;
 }
 
+static GtkWidget *
+add_choice (GtkWidget *box, const GPtrArray *editions, const char *before, const char *name)
+{
+  GtkWidget *label = gtk_label_new (name), *choice = new_choice (editions, before, name);
+  gtk_label_set_xalign (GTK_LABEL (label), 0);
+  gtk_widget_add_css_class (label, "caption");
+  gtk_box_append (GTK_BOX (box), label);
+  gtk_box_append (GTK_BOX (box), choice);
+  return choice;
+}
+
 ACTION (compare_editions)
 {
   const GPtrArray *editions = tf_session_get_editions (session_of (window));
@@ -282,11 +331,9 @@ ACTION (compare_editions)
       = adw_message_dialog_new (GTK_WINDOW (window), _ ("Compare editions"),
                                 _ ("What differs, and why: rows, choices, or the program."));
   AdwMessageDialog *message = ADW_MESSAGE_DIALOG (dialog);
-  GtkWidget *box = gtk_box_new (GTK_ORIENTATION_VERTICAL, 8);
-  GtkWidget *first = new_choice (editions, NULL, _ ("This edition")),
-            *second = new_choice (editions, _ ("the study as it is now"), _ ("Against"));
-  gtk_box_append (GTK_BOX (box), first);
-  gtk_box_append (GTK_BOX (box), second);
+  GtkWidget *box = gtk_box_new (GTK_ORIENTATION_VERTICAL, 4);
+  GtkWidget *first = add_choice (box, editions, NULL, _ ("This edition")),
+            *second = add_choice (box, editions, _ ("the study as it is now"), _ ("Against"));
   adw_message_dialog_set_extra_child (message, box);
   adw_message_dialog_add_responses (message, "cancel", _ ("_Cancel"), "yes", _ ("C_ompare"), NULL);
   adw_message_dialog_set_default_response (message, "yes");
@@ -295,6 +342,9 @@ ACTION (compare_editions)
   g_object_set_data (G_OBJECT (dialog), "second", second);
   g_signal_connect_object (dialog, "response", G_CALLBACK (pair_answered), window, 0);
   gtk_window_present (GTK_WINDOW (dialog));
+  GtkWidget *compare = gtk_window_get_default_widget (GTK_WINDOW (dialog));
+  if (compare != NULL)
+    gtk_widget_grab_focus (compare); /* Return compares; a choice that has the keyboard opens on it */
 }
 
 /* -- the menu ----------------------------------------------------------------------------------------- */
@@ -316,7 +366,7 @@ tf_study_menu_new (TfSession *session)
   const char *now = tf_session_get_study (session)->name;
   GMenu *menu = g_menu_new ();
   g_autoptr (GMenu) names = g_menu_new (), keep = g_menu_new (), files = g_menu_new (),
-                    editions = g_menu_new ();
+                    editions = g_menu_new (), bundles = g_menu_new ();
   gboolean has_default = FALSE, has_now = strcmp (now, "default") == 0;
   for (guint k = 0; studies != NULL && k < studies->len; k++)
     {
@@ -336,10 +386,13 @@ tf_study_menu_new (TfSession *session)
   g_menu_append (editions, _ ("Compare editions…"), "win.compare-editions");
   g_menu_append (files, _ ("Open a study…"), "win.open-study::");
   g_menu_append (files, _ ("Save the study…"), "win.save-study::");
+  g_menu_append (bundles, _ ("Save a study bundle…"), "win.save-bundle::");
+  g_menu_append (bundles, _ ("Open a study bundle…"), "win.open-bundle::");
   g_menu_append_section (menu, _ ("Studies"), G_MENU_MODEL (names));
   g_menu_append_section (menu, NULL, G_MENU_MODEL (keep));
   g_menu_append_section (menu, NULL, G_MENU_MODEL (editions));
   g_menu_append_section (menu, NULL, G_MENU_MODEL (files));
+  g_menu_append_section (menu, NULL, G_MENU_MODEL (bundles));
   return G_MENU_MODEL (menu);
 }
 
@@ -397,5 +450,6 @@ tf_window_update_study_actions (TfWindow *self)
   enable (self, "keep-edition", writes && !making);
   enable (self, "apply-what-if", writes && !making);
   enable (self, "cancel-edition", making);
-  enable (self, "compare-editions", shown);
+  enable (self, "compare-editions", shown && !making);
+  tf_window_update_bundle_actions (self);
 }

@@ -13,6 +13,7 @@
 #include "tf-dipole-table.h"
 #include "tf-laws-study.h"
 #include "tf-session-studies.h"
+#include "tf-study-task.h"
 #include "tf-what-if-list.h"
 #include "tf-widget-style.h"
 
@@ -22,7 +23,7 @@ struct _TfLawsBench
   TfSession *session;
   GtkWidget *parts;
   GtkBox *study, *one;
-  GtkLabel *study_name, *study_state, *stretch, *one_title, *words, *progress, *cautions;
+  GtkLabel *study_name, *study_state, *edition_words, *stretch, *one_title, *words, *progress, *cautions;
   GtkMenuButton *study_menu;
   gconstpointer in_menu; /* the list that the menu shows; compared, never followed */
   char *name_in_menu;
@@ -142,6 +143,15 @@ dup_state (TfLawsBench *self)
   return g_strdup (changed ? _ ("Not kept") : _ ("As the program sets it; not kept"));
 }
 
+/* A study that is being worked out whole, counted in steps. */
+static void
+show_task (TfLawsBench *self)
+{
+  g_autofree char *words = tf_session_dup_study_task (self->session);
+  gtk_widget_set_visible (self->edition_bar, words != NULL);
+  gtk_label_set_label (self->edition_words, words != NULL ? words : "");
+}
+
 static void
 show_study (TfLawsBench *self)
 {
@@ -164,7 +174,7 @@ show_study (TfLawsBench *self)
       g_free (self->name_in_menu);
       self->name_in_menu = g_strdup (name);
     }
-  gtk_widget_set_visible (self->edition_bar, tf_session_makes_edition (self->session));
+  show_task (self);
 }
 
 static void
@@ -316,6 +326,7 @@ tf_laws_bench_set_session (TfLawsBench *self, TfSession *session)
   gtk_box_append (self->study, study);
   g_signal_connect_object (session, "laws-changed", G_CALLBACK (laws_changed), self,
                            G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "status-changed", G_CALLBACK (show_task), self, G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "points-changed", G_CALLBACK (show_stretch), self,
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (self->dipole, "notify::expanded", G_CALLBACK (show_dipoles), self,
@@ -370,6 +381,7 @@ tf_laws_bench_class_init (TfLawsBenchClass *klass)
   gtk_widget_class_bind_template_child (widget, TfLawsBench, study_name);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, study_state);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, edition_bar);
+  gtk_widget_class_bind_template_child (widget, TfLawsBench, edition_words);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, stretch);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, all_times);
   gtk_widget_class_bind_template_child (widget, TfLawsBench, stack);

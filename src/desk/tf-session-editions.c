@@ -11,16 +11,17 @@
 #include "tf-session-laws-private.h"
 #include "tf-session-studies.h"
 #include "tf-study-compare.h"
+#include "tf-study-task.h"
 
 /* -- working one out, in a thread ---------------------------------------------------------------- */
 
 static char *
-work_out (TfLedger *ledger, const TfStudy *study, GError **error)
+work_out (TfStudyTask *task, TfLedger *ledger, const TfStudy *study, GError **error)
 {
-  g_autoptr (TfFindings) findings = tf_study_run (study, ledger, error);
+  g_autoptr (TfFindings) findings = tf_study_task_whole (task, study, ledger, error);
   g_autoptr (GPtrArray) keep = NULL;
   g_autoptr (TfStudy) now = tf_study_copy (study);
-  if (findings == NULL)
+  if (findings == NULL || !tf_study_task_step (task, error))
     return NULL;
   now->even_floor_gauss = findings->even_floor_gauss;
   g_autoptr (GArray) rows = tf_export_rows (ledger, now, now->sieve.with_hints, &keep, error);
@@ -31,6 +32,7 @@ typedef struct
 {
   char *path;
   TfStudy *study;
+  TfStudyTask *task;
   char *name;            /* of the edition to be kept */
   char *first, *second;  /* of those to be compared; second NULL: the study */
   TfCompared compared;
@@ -42,18 +44,25 @@ job_free (gpointer data)
   Job *job = data;
   g_free (job->path);
   tf_study_free (job->study);
+  tf_study_task_unref (job->task);
   g_free (job->name);
   g_free (job->first);
   g_free (job->second);
   g_free (job);
 }
 
+enum
+{
+  STEPS = TF_STUDY_WHOLE_STEPS + 1
+};
+
 static Job *
-job_new (TfSession *self)
+job_new (TfSession *self, TfStudyTask *task)
 {
   Job *job = g_new0 (Job, 1);
   job->path = g_strdup (self->path);
   job->study = tf_study_copy (self->laws->study);
+  job->task = task;
   return job;
 }
 
@@ -65,7 +74,7 @@ make (GTask *task, gpointer source, gpointer data, GCancellable *cancellable)
   const Job *job = data;
   GError *error = NULL;
   g_autoptr (TfLedger) ledger = tf_ledger_open (job->path, &error);
-  char *text = ledger != NULL ? work_out (ledger, job->study, &error) : NULL;
+  char *text = ledger != NULL ? work_out (job->task, ledger, job->study, &error) : NULL;
   if (text != NULL)
     g_task_return_pointer (task, text, g_free);
   else
@@ -94,51 +103,39 @@ made (GObject *source, GAsyncResult *result, gpointer data)
   g_autoptr (GError) error = NULL;
   g_autofree char *text = g_task_propagate_pointer (G_TASK (result), &error);
   const Job *job = g_task_get_task_data (G_TASK (result));
-  gboolean here = self->laws->editing == g_task_get_cancellable (G_TASK (result));
-  if (here)
-    g_clear_object (&self->laws->editing);
-  if (here && text != NULL && self->person != NULL)
+  if (!tf_study_task_end (job->task, self))
+    return;
+  if (text != NULL && self->person != NULL)
     keep (self, job, text);
-  else if (here && error != NULL)
+  else if (error != NULL)
     tf_session_say (self, error->message);
-  tf_session_emit (self, TF_SIGNAL_LAWS);
 }
 
 void
 tf_session_keep_edition (TfSession *self, const char *name)
 {
   g_return_if_fail (TF_IS_SESSION (self) && name != NULL);
-  TfSessionLaws *laws = self->laws;
-  if (!tf_session_is_writable (self) || laws->hold.in_hand || laws->editing != NULL)
+  if (!tf_session_is_writable (self) || self->laws->hold.in_hand)
     return;
   if (self->person == NULL)
     {
       tf_session_emit (self, TF_SIGNAL_PERSON_NEEDED);
       return;
     }
-  Job *job = job_new (self);
+  TfStudyTask *own = tf_study_task_begin (self, _ ("Working out the edition"), STEPS);
+  if (own == NULL)
+    return;
+  Job *job = job_new (self, own);
   job->name = g_strstrip (g_strdup (name));
-  laws->editing = g_cancellable_new ();
-  g_autoptr (GTask) task = g_task_new (self, laws->editing, made, NULL);
+  g_autoptr (GTask) task = g_task_new (self, NULL, made, NULL);
   g_task_set_task_data (task, job, job_free);
   g_task_run_in_thread (task, make);
-  tf_session_emit (self, TF_SIGNAL_LAWS);
 }
 
 gboolean
 tf_session_makes_edition (TfSession *self)
 {
-  return self->laws->editing != NULL;
-}
-
-void
-tf_session_cancel_edition (TfSession *self)
-{
-  if (self->laws->editing == NULL)
-    return;
-  g_cancellable_cancel (self->laws->editing);
-  g_clear_object (&self->laws->editing);
-  tf_session_emit (self, TF_SIGNAL_LAWS);
+  return self->laws->task != NULL;
 }
 
 /* -- a choice of "what if" taken in ---------------------------------------------------------------- */
@@ -185,7 +182,7 @@ static char *
 dup_edition (TfLedger *ledger, const Job *job, const char *name, GError **error)
 {
   if (name == NULL)
-    return work_out (ledger, job->study, error);
+    return work_out (job->task, ledger, job->study, error);
   g_autoptr (TfNamed) named = tf_ledger_edition (ledger, name, error);
   if (named == NULL && error != NULL && *error == NULL)
     g_set_error (error, TF_STUDY_ERROR, TF_STUDY_ERROR_READ, _ ("%s has no edition “%s”"), job->path,
@@ -216,7 +213,8 @@ compared (GObject *source, GAsyncResult *result, gpointer data)
   const Job *job = g_task_get_task_data (G_TASK (result));
   g_autoptr (GError) error = NULL;
   g_autoptr (GPtrArray) differences = g_task_propagate_pointer (G_TASK (result), &error);
-  job->compared (differences, error != NULL ? error->message : NULL, kept);
+  if (tf_study_task_end (job->task, TF_SESSION (source)))
+    job->compared (differences, error != NULL ? error->message : NULL, kept);
 }
 
 void
@@ -224,7 +222,10 @@ tf_session_compare_editions (TfSession *self, const char *first, const char *sec
                              TfCompared done, GObject *data)
 {
   g_return_if_fail (TF_IS_SESSION (self) && first != NULL && done != NULL);
-  Job *job = job_new (self);
+  TfStudyTask *own = tf_study_task_begin (self, _ ("Comparing"), STEPS);
+  if (own == NULL)
+    return;
+  Job *job = job_new (self, own);
   job->first = g_strdup (first);
   job->second = g_strdup (second);
   job->compared = done;

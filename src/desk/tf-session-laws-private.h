@@ -25,7 +25,7 @@ struct _TfSessionLaws
   GPtrArray *studies, *editions; /* of TfNamed: as they stand in the ledger; NULL: not read yet */
   char *kept_text;               /* what stands under the study's name, to compare; NULL: nothing */
   GHashTable *set_aside;         /* name -> TfStudy: changed and not kept when another was chosen */
-  GCancellable *editing;         /* an edition is being worked out */
+  struct _TfStudyTask *task;     /* a study is being worked out whole; NULL */
 };
 
 void tf_session_laws_init (TfSession *session);

@@ -11,6 +11,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-session-laws-private.h"
+#include "tf-study-task.h"
 
 static const char default_name[] = "default";
 
@@ -260,7 +261,7 @@ void
 tf_session_studies_close (TfSession *self)
 {
   TfSessionLaws *laws = self->laws;
-  tf_session_cancel_edition (self);
+  tf_session_stop_study_task (self);
   g_clear_pointer (&laws->studies, g_ptr_array_unref);
   g_clear_pointer (&laws->editions, g_ptr_array_unref);
   g_clear_pointer (&laws->kept_text, g_free);
@@ -462,16 +463,25 @@ loaded (GObject *source, GAsyncResult *result, gpointer data)
     study = tf_study_read_text (text, name, &error);
   if (study == NULL)
     tf_session_say (self, error->message);
-  else if (!may_keep (self))
+  else
+    tf_session_take_study_of (self, study);
+}
+
+void
+tf_session_take_study_of (TfSession *self, const TfStudy *given)
+{
+  g_return_if_fail (TF_IS_SESSION (self) && given != NULL);
+  if (!may_keep (self))
     tf_session_say (self, _ ("A study from a file is kept in the ledger, which needs a name and a "
                              "ledger that can be written to. Open it again then."));
   else
     {
+      TfStudy *study = tf_study_copy (given);
       set_aside (self);
       tf_session_choose_divide (self, 0, 0, 0);
       tf_session_push_study (self, deed_of_copy (self, "study", study));
       study->version = 0;
-      tf_session_take_study (self, g_steal_pointer (&study));
+      tf_session_take_study (self, study);
       is_kept_now (self);
     }
 }

@@ -37,6 +37,8 @@ gboolean tf_session_put_away_study (TfSession *session);
 /** tf_session_open_study: a study.json is kept in the ledger as a deed and chosen. What is wrong with
  * the file is said. */
 void tf_session_open_study (TfSession *session, GFile *file);
+/** tf_session_take_study_of: the same with a study that was read. */
+void tf_session_take_study_of (TfSession *session, const TfStudy *study);
 void tf_session_save_study (TfSession *session, GFile *file);
 
 /** tf_session_keep_scale: a deed: an instrument's scale. */
@@ -46,8 +48,8 @@ void tf_session_keep_edition (TfSession *session, const char *name);
 /** tf_session_apply_what_if: takes a choice into the study and keeps it as a new edition. FALSE: the
  * study has no option that says so. */
 gboolean tf_session_apply_what_if (TfSession *session, const char *what_if);
+/** tf_session_makes_edition: one, or a comparison, is being worked out (tf-study-task.h). */
 gboolean tf_session_makes_edition (TfSession *session);
-void tf_session_cancel_edition (TfSession *session);
 
 /** TfCompared: @differences: (element-type utf8): sentences, none when they are the same; NULL: @trouble. */
 typedef void (*TfCompared) (const GPtrArray *differences, const char *trouble, gpointer data);

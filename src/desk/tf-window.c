@@ -44,7 +44,8 @@ struct _TfWindow
   TfFollowBench *follow;
   TfFollowed *followed;
   TfSession *session;
-  AdwToast *toast; /* the last one */
+  AdwToast *toast; /* the last one, while it stands */
+  gint64 said;     /* when it came, us */
   guint age_timer;
 };
 
@@ -57,6 +58,7 @@ enum
   ROLL_WIDTH = 166,
   SLIP_WIDTH = 304
 };
+#define TOAST_COMES_US (600 * 1000)
 #define USUAL_TEXT 13.5 /* pixels of a letter where nobody asked for another size */
 static const char sqlite_magic[] = "SQLite format 3";
 
@@ -72,16 +74,32 @@ tf_window_focus_plate (TfWindow *self)
   gtk_widget_grab_focus (GTK_WIDGET (tf_plate_pane_get_plate (self->plate_pane)));
 }
 
-/* What was said before is past: it does not stand in the way of what is said now. */
+static void
+toast_gone (AdwToast *toast, TfWindow *self)
+{
+  if (self->toast == toast)
+    g_clear_object (&self->toast);
+}
+
+/* What was said before is past: it does not stand in the way of what is said now. One that has only just
+ * come is written over: the overlay is not asked to let go of what is still coming in. */
 void
 tf_window_say (TfWindow *self, const char *text)
 {
   g_autofree char *plain = g_markup_escape_text (text, -1);
+  gint64 now = g_get_monotonic_time ();
+  if (self->toast != NULL && now - self->said < TOAST_COMES_US)
+    {
+      adw_toast_set_title (self->toast, plain);
+      return;
+    }
   AdwToast *toast = adw_toast_new (plain);
   adw_toast_set_timeout (toast, TOAST_SECONDS);
   if (self->toast != NULL)
     adw_toast_dismiss (self->toast);
   g_set_object (&self->toast, toast);
+  self->said = now;
+  g_signal_connect_object (toast, "dismissed", G_CALLBACK (toast_gone), self, 0);
   adw_toast_overlay_add_toast (self->toasts, toast);
 }
 
@@ -535,6 +553,8 @@ tf_window_init (TfWindow *self)
   tf_window_add_laws_actions (self);
   tf_window_add_study_actions (self);
   tf_window_add_chart_actions (self);
+  tf_window_add_bundle_actions (self);
+  tf_window_add_scale_actions (self);
   g_signal_connect_object (self->benches, "notify::visible-child", G_CALLBACK (bench_changed), self,
                            G_CONNECT_SWAPPED);
   tf_window_add_drop (self);

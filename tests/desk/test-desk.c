@@ -129,6 +129,7 @@ main (int argc, char **argv)
   test_desk_add_keys ();
   test_desk_add_laws ();
   test_desk_add_studies ();
+  test_desk_add_bundles ();
   int result = g_test_run ();
   remove_all (top);
   return result;

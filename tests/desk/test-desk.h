@@ -31,3 +31,4 @@ void test_desk_add_session (void);
 void test_desk_add_window (void);
 void test_desk_add_laws (void);
 void test_desk_add_studies (void);
+void test_desk_add_bundles (void);
