@@ -329,13 +329,26 @@ read_names (TfStudy *study, JsonObject *root, const char *name, GError **error)
   return TRUE;
 }
 
+/* Conditions that a file gives stand for all that the sieve's options say; where it gives none the default
+ * ones hold, as with methods. */
+static void
+open_sieve (TfSieveParams *p, JsonObject *root)
+{
+  if (json_object_has_member (root, "mark_conditions"))
+    {
+      p->with_hints = p->with_models = TRUE;
+      p->cmd_max_deg = 90;
+    }
+  if (json_object_has_member (root, "region_conditions"))
+    p->ephemeral = TF_EPHEMERAL_IN;
+}
+
 static gboolean
 read_study (TfStudy *study, JsonObject *root, const char *name, GError **error)
 {
   JsonObject *conventions = tf_json_member_object (root, "conventions");
   JsonObject *methods = tf_json_member_object (root, "methods");
-  study->sieve = (TfSieveParams){ .with_hints = TRUE, .cmd_max_deg = 90,
-                                  .ephemeral = TF_EPHEMERAL_IN, .with_models = TRUE };
+  open_sieve (&study->sieve, root);
   if (!read_names (study, root, name, error)
       || !read_conditions (study, root, "mark_conditions", FALSE, name, error)
       || !read_conditions (study, root, "region_conditions", TRUE, name, error)

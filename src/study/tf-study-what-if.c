@@ -190,6 +190,13 @@ is_linked (const TfFindings *findings)
   return findings->sampling.passages < tf_sample_get_n (findings->every);
 }
 
+/* The floor of a table's rows is its source's affair: another of ours would seem to change nothing. */
+static gboolean
+is_all_outside (const TfFindings *findings)
+{
+  return findings->n_outside > 0 && findings->n_marks + findings->n_hints == 0;
+}
+
 static void
 add_choice (const TfChoice *choice, const Context *context, TfWhatIf *row)
 {
@@ -201,7 +208,8 @@ add_choice (const TfChoice *choice, const Context *context, TfWhatIf *row)
     fill_scaled (row, &v, context);
   else if (needs_passages (choice, &v) && !is_linked (context->findings))
     row->missing = "not-linked";
-  else if (choice->from == TF_FROM_ROWS && context->ledger == NULL)
+  else if (choice->from == TF_FROM_ROWS
+           && (context->ledger == NULL || (!v.with_hints && is_all_outside (context->findings))))
     row->missing = "not-measured";
   else if (choice->from == TF_FROM_ROWS)
     fill_from_ledger (row, &v, context);

@@ -103,6 +103,21 @@ test_not_studies (void)
     }
 }
 
+/* Without conditions of its own a file has the default ones; an empty list is none. */
+static void
+test_default_sieve (void)
+{
+  g_autoptr (TfStudy) plain = tf_study_read_text ("{\"name\": \"a\"}", "made.json", NULL);
+  g_autoptr (TfStudy) open = tf_study_read_text (
+      "{\"name\": \"a\", \"mark_conditions\": [], \"region_conditions\": []}", "made.json", NULL);
+  g_assert_false (plain->sieve.with_hints || plain->sieve.with_models);
+  tf_check_near ("within", plain->sieve.cmd_max_deg, 60, 0);
+  g_assert_cmpint (plain->sieve.ephemeral, ==, TF_EPHEMERAL_OUT);
+  g_assert_true (open->sieve.with_hints && open->sieve.with_models);
+  tf_check_near ("to the limb", open->sieve.cmd_max_deg, 90, 0);
+  g_assert_cmpint (open->sieve.ephemeral, ==, TF_EPHEMERAL_IN);
+}
+
 static void
 test_conditions (void)
 {
@@ -168,6 +183,7 @@ test_study_add_file (void)
 {
   g_test_add_func ("/study/file/a-study-is-read-back-as-it-was-written", test_round_trip);
   g_test_add_func ("/study/file/what-is-no-study-is-told-by-its-member", test_not_studies);
+  g_test_add_func ("/study/file/without-conditions-it-has-the-default-ones", test_default_sieve);
   g_test_add_func ("/study/file/conditions-hold-fail-or-have-nothing-to-say", test_conditions);
   g_test_add_func ("/study/file/numbers-are-compared-to-the-digits-printed", test_differences);
 }
