@@ -61,10 +61,11 @@ tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
   tf_study_measure_row (m, &row);
   g_autofree char *says = tf_verdict_dup_text (&verdict, &row, FALSE);
   GString *out = g_string_new (NULL);
-  g_string_append_printf (out, _ ("latitude %+.2f°, "), m->lat_deg);
+  if (isfinite (m->lat_deg)) /* something above the floor */
+    g_string_append_printf (out, _ ("latitude %+.2f°, "), m->lat_deg);
   if (isfinite (m->cmd_deg)) /* not on a map */
     g_string_append_printf (out, _ ("CMD %+.2f°, μ %.2f, "), m->cmd_deg, m->mu);
-  else
+  else if (isfinite (m->carrington_lon_deg))
     g_string_append_printf (out, _ ("Carrington %.2f°, "), m->carrington_lon_deg);
   g_string_append_printf (out, _ ("floor %.0f G (%s), noise %.1f G, field %s\n"), m->floor_gauss, tf_floor_kind_name (m->floor_kind), m->noise_gauss,
                           tf_field_used_name (m->field_used));

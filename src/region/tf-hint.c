@@ -97,7 +97,8 @@ make_hint (const TfFrame *frame, const TfHintPieces *pieces, guint k, const TfMe
   TfHint *hint = g_new0 (TfHint, 1);
   hint->unipolar = unipolar;
   hint->outline = outline;
-  if (!tf_measure_region (&hint->measure, frame, outline, measure, NULL))
+  /* Of no hint whose pixels are all below the floor is there anything to tell. */
+  if (!tf_measure_region (&hint->measure, frame, outline, measure, NULL) || !(hint->measure.flux_unsigned_mx > 0.0))
     {
       tf_hint_free (hint);
       return NULL;

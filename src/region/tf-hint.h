@@ -14,7 +14,7 @@
 
 G_BEGIN_DECLS
 
-#define TF_HINT_RULE "plain/4"
+#define TF_HINT_RULE "plain/5"
 
 /** TfHintParams: defaults, units, ranges and what each is for stand in tf_hint_options; no number of the rule is anywhere else. */
 typedef struct

@@ -55,6 +55,27 @@ test_plain (void)
   check_told (hints, 1, NULL);
 }
 
+/* Where no pixel reaches the measurement's floor there is nothing to tell. */
+static void
+test_nothing_above (void)
+{
+  BuilderPole poles[2];
+  BuilderFrame how;
+  TfHintParams params;
+  TfMeasureParams measure;
+  builder_bipole (poles, 5.0, 15.0, 5.0, 8.0, 1e22, 1);
+  builder_init (&how, 5.0, 15.0, 2.0);
+  how.half_deg = 17.0;
+  g_autoptr (TfFrame) frame = builder_frame (&how, poles, 2);
+  tf_hint_params_init (&params);
+  tf_measure_params_init (&measure);
+  g_autoptr (GPtrArray) some = tf_hints_find (frame, &params, &measure, NULL, NULL);
+  g_assert_cmpuint (some->len, ==, 1);
+  measure.floor_gauss = 9000.0;
+  g_autoptr (GPtrArray) none = tf_hints_find (frame, &params, &measure, NULL, NULL);
+  g_assert_cmpuint (none->len, ==, 0);
+}
+
 /* Two balanced bipoles, one above the other, their edges some Mm apart. */
 static void
 test_neighbours (void)
@@ -243,6 +264,7 @@ void
 add_hint_built_tests (void)
 {
   g_test_add_func ("/region/hint/a-plain-bipole-has-no-caution", test_plain);
+  g_test_add_func ("/region/hint/nothing-above-the-floor-is-no-hint", test_nothing_above);
   g_test_add_func ("/region/hint/a-near-neighbour-is-told", test_neighbours);
   g_test_add_func ("/region/hint/a-far-neighbour-is-not-told", test_neighbours_far);
   g_test_add_func ("/region/hint/a-long-region-is-told", test_long);
