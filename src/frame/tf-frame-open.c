@@ -248,14 +248,21 @@ judge_missing (const float *pixels, TfFrameInfo *info)
     tf_notes_add (info->cautions, "missing-data", "d", 100.0 * missing / n);
 }
 
+/* So much of a limb is no edge of something cut. */
+static const double WHOLE_LIMB_DEG = 240.0;
+
+/* On what the header makes a cut-out a whole limb is the header's lie; a piece of one may be the
+ * edge of what was cut. */
 static void
 judge_pixels (const float *pixels, TfFrameInfo *info)
 {
   judge_missing (pixels, info);
-  if (info->kind != TF_KIND_DISK)
+  if (info->kind != TF_KIND_DISK && info->kind != TF_KIND_CUT_OUT)
     return;
-  TfLimbFit fit = tf_limb_fit (pixels, &info->geometry);
-  tf_limb_judge (&fit, &info->geometry, info->cautions);
+  TfLimbFit fit = info->role == TF_ROLE_INTENSITY ? tf_limb_fit_bright (pixels, &info->geometry)
+                                                  : tf_limb_fit (pixels, &info->geometry);
+  if (info->kind == TF_KIND_DISK || fit.seen_deg >= WHOLE_LIMB_DEG)
+    tf_limb_judge (&fit, &info->geometry, info->cautions);
 }
 
 /* -- opening --------------------------------------------------------------------------------- */
@@ -321,8 +328,7 @@ open_role (const char *path, const TfFrameSpec *spec, TfRole wanted, const TfWor
       tf_pyramid_make (&pyramid, tf_pixels_get (pixels), tf_fits_get_width (fits),
                        tf_fits_get_height (fits), work);
     }
-  if (wanted == TF_ROLE_FIELD)
-    judge_pixels (tf_pixels_get (pixels), info);
+  judge_pixels (tf_pixels_get (pixels), info);
   return tf_frame_new_take (g_steal_pointer (&info), pixels, &pyramid, path,
                             tf_fits_get_hdu (fits), work);
 }

@@ -28,7 +28,19 @@ typedef struct
 {
   const float *pixels;
   int width, height;
+  float least; /* only what is above has a value: the sky of an intensity picture has none */
 } Picture;
+
+/* Where limbs are looked for, in radii of the header's disk: first near it; a header of another
+ * size of the picture may be far off. */
+typedef struct
+{
+  double from, to;
+} Range;
+
+static const Range ranges[] = { { 0.4, 1.5 }, { 0.15, 6.0 } };
+/* The sky of an intensity picture is darker than this share of the disk. */
+static const double DARK = 0.2;
 
 /* 1 with a value, 0 without, -1 outside the picture. */
 static int
@@ -37,22 +49,23 @@ look (const Picture *p, double x, double y)
   int column = (int)floor (x - 0.5), row = (int)floor (y - 0.5);
   if (column < 0 || row < 0 || column >= p->width || row >= p->height)
     return -1;
-  return isfinite (p->pixels[(gssize)row * p->width + column]) ? 1 : 0;
+  return p->pixels[(gssize)row * p->width + column] > p->least ? 1 : 0;
 }
 
 /* Outermost end of the values on one ray, at least two pixels within the picture; NaN when
  * there is none. */
 static double
-ray_edge (const Picture *p, double cx, double cy, double angle, double radius)
+ray_edge (const Picture *p, double cx, double cy, double angle, double radius, const Range *range)
 {
-  double c = cos (angle), s = sin (angle), r = 1.5 * radius, step = MAX (1, radius / 250);
-  while (r > 0.4 * radius && look (p, cx + r * c, cy + r * s) < 0)
+  double c = cos (angle), s = sin (angle), r = range->to * radius, step = MAX (1, radius / 250),
+         least = range->from * radius;
+  while (r > least && look (p, cx + r * c, cy + r * s) < 0)
     r -= step;
   if (look (p, cx + r * c, cy + r * s) == 1)
     return NAN; /* the values run on to the picture's edge */
-  while (r > 0.4 * radius && look (p, cx + r * c, cy + r * s) == 0)
+  while (r > least && look (p, cx + r * c, cy + r * s) == 0)
     r -= step;
-  if (r <= 0.4 * radius)
+  if (r <= least)
     return NAN;
   double low = r, high = r + step;
   for (guint k = 0; k < 12; k++)
@@ -67,12 +80,14 @@ ray_edge (const Picture *p, double cx, double cy, double angle, double radius)
 }
 
 static guint
-cast_rays (const Picture *p, double cx, double cy, double radius, Point *points)
+cast_rays (const Picture *p, double cx, double cy, double radius, const Range *range,
+           Point *points)
 {
   guint n = 0;
   for (guint k = 0; k < RAYS; k++)
     {
-      double angle = (k + 0.37) * 2 * TF_PI / RAYS, r = ray_edge (p, cx, cy, angle, radius);
+      double angle = (k + 0.37) * 2 * TF_PI / RAYS,
+             r = ray_edge (p, cx, cy, angle, radius, range);
       if (!isnan (r))
         points[n++] = (Point){ cx + r * cos (angle), cy + r * sin (angle) };
     }
@@ -221,36 +236,85 @@ fit_circle (const Point *points, guint n, TfLimbFit *fit)
   return TRUE;
 }
 
-TfLimbFit
-tf_limb_fit (const float *pixels, const TfGeometry *geometry)
+/* @scan: also where the scatter changes. */
+static gboolean
+fit_limb (TfLimbFit *fit, const Picture *picture, double radius, const Range *range, gboolean scan)
 {
-  TfLimbFit fit = { .centre_x = NAN, .centre_y = NAN, .radius_px = NAN, .sigma_px = NAN },
-            none = fit;
-  Picture picture = { pixels, (int)geometry->width, (int)geometry->height };
   Point points[RAYS];
+  fit->radius_px = radius;
+  for (guint turn = 0; turn < 3; turn++)
+    {
+      double per_point = 360.0 / RAYS;
+      fit->n_points
+          = cast_rays (picture, fit->centre_x, fit->centre_y, fit->radius_px, range, points);
+      if (scan && fit->n_points < FEWEST)
+        {
+          per_point = 360.0 / SECTORS;
+          fit->n_points
+              = scan_sectors (picture, fit->centre_x, fit->centre_y, fit->radius_px, points);
+        }
+      fit->seen_deg = fit->n_points * per_point;
+      if (fit->seen_deg < FEWEST || !fit_circle (points, fit->n_points, fit)
+          || !(fit->radius_px > range->from * radius && fit->radius_px < range->to / 0.6 * radius)
+          || fit->sigma_px > 0.03 * fit->radius_px)
+        return FALSE;
+    }
+  fit->found = TRUE;
+  return TRUE;
+}
+
+static TfLimbFit
+look_for_limb (const Picture *picture, const TfGeometry *geometry, gboolean scan)
+{
+  const TfLimbFit none = { .centre_x = NAN, .centre_y = NAN, .radius_px = NAN, .sigma_px = NAN };
   double cx, cy, radius = tf_geometry_disk_radius (geometry);
   if (geometry->projection != TF_PROJECTION_TAN || !tf_geometry_disk_centre (geometry, &cx, &cy)
       || !(radius > 4) || !(radius < 1e6))
     return none;
-  fit.centre_x = cx;
-  fit.centre_y = cy;
-  fit.radius_px = radius;
-  for (guint turn = 0; turn < 3; turn++)
+  if (cx < 0.5 * radius || cy < 0.5 * radius || cx > geometry->width - 0.5 * radius
+      || cy > geometry->height - 0.5 * radius)
+    scan = FALSE; /* a cut-out by its header: a change of scatter there is no limb */
+  for (guint k = 0; k < G_N_ELEMENTS (ranges); k++)
     {
-      double per_point = 360.0 / RAYS;
-      fit.n_points = cast_rays (&picture, fit.centre_x, fit.centre_y, fit.radius_px, points);
-      if (fit.n_points < FEWEST)
-        {
-          per_point = 360.0 / SECTORS;
-          fit.n_points = scan_sectors (&picture, fit.centre_x, fit.centre_y, fit.radius_px, points);
-        }
-      if (fit.n_points * per_point < FEWEST || !fit_circle (points, fit.n_points, &fit)
-          || !(fit.radius_px > 0.4 * radius && fit.radius_px < 2.5 * radius)
-          || fit.sigma_px > 0.03 * radius)
-        return none;
+      TfLimbFit fit = { .centre_x = cx, .centre_y = cy };
+      if (fit_limb (&fit, picture, radius, &ranges[k], scan && k == 0))
+        return fit;
     }
-  fit.found = TRUE;
-  return fit;
+  return none;
+}
+
+TfLimbFit
+tf_limb_fit (const float *pixels, const TfGeometry *geometry)
+{
+  const Picture picture
+      = { pixels, (int)geometry->width, (int)geometry->height, -(float)INFINITY };
+  return look_for_limb (&picture, geometry, TRUE);
+}
+
+/* The median of some hundred pixels of the middle of the picture. */
+static double
+middle_value (const float *pixels, const TfGeometry *g)
+{
+  double values[400];
+  guint n = 0;
+  for (guint k = 0; k < G_N_ELEMENTS (values); k++)
+    {
+      guint x = (guint)(g->width * (0.25 + 0.5 * (k % 20 + 0.5) / 20)),
+            y = (guint)(g->height * (0.25 + 0.5 * (k / 20 + 0.5) / 20));
+      float v = pixels[(gsize)y * g->width + x];
+      if (isfinite (v))
+        values[n++] = (double)v;
+    }
+  return n > 0 ? median (values, n) : (double)NAN;
+}
+
+TfLimbFit
+tf_limb_fit_bright (const float *pixels, const TfGeometry *geometry)
+{
+  double middle = middle_value (pixels, geometry);
+  const Picture picture = { pixels, (int)geometry->width, (int)geometry->height,
+                            middle > 0.0 ? (float)(DARK * middle) : -(float)INFINITY };
+  return look_for_limb (&picture, geometry, FALSE);
 }
 
 void

@@ -19,12 +19,15 @@ typedef struct
   double radius_px;
   double sigma_px; /* scatter of the limb points about the circle */
   guint n_points;
+  double seen_deg; /* how much of the circle they stand for */
 } TfLimbFit;
 
 /** tf_limb_fit: a circle through the edge of the valid pixels (or of the noise, where the whole
- * array is filled): edges along rays, robust least squares. found is FALSE on cut-outs and maps
- * and when fewer than 60 deg of limb are seen. */
+ * array is filled): edges along rays, robust least squares. Looked for near the header's first, then
+ * anywhere in the picture. found is FALSE on maps and when fewer than 60 deg of limb are seen.
+ * tf_limb_fit_bright: the same on an intensity picture, whose sky is dark. */
 TfLimbFit tf_limb_fit (const float *pixels, const TfGeometry *geometry);
+TfLimbFit tf_limb_fit_bright (const float *pixels, const TfGeometry *geometry);
 /** tf_limb_judge: caution above max (0.2 %, 0.5 px); "header-lies" above 1 %. Adds to @cautions. */
 void tf_limb_judge (const TfLimbFit *fit, const TfGeometry *geometry, TfNotes *cautions);
 

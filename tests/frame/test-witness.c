@@ -53,6 +53,54 @@ test_limb (void)
   tf_check_near ("limb radius, sky filled", filled.radius_px, 221, 0.5);
 }
 
+/* A header of another size of the picture: the disk is found wherever it is, and the header is told to lie. */
+static void
+test_limb_far (void)
+{
+  static const struct
+  {
+    double centre, radius;
+  } told[] = { { 125.5, 110 }, { 250.5, 280 }, { 300.5, 160 }, { 250.5, 60 } };
+  for (guint k = 0; k < G_N_ELEMENTS (told); k++)
+    {
+      TfGeometry g, lies;
+      g_autoptr (GPtrArray) cautions = tf_notes_new ();
+      g_autofree float *pixels = g_new (float, 500 * 500);
+      fit_of (250.5, 250.5, 220, FALSE, 0, &g);
+      double scale = tf_geometry_scale_arcsec (&g) * tf_geometry_disk_radius (&g) / told[k].radius;
+      g_assert_true (tf_geometry_make_disk (&lies, 500, 500, told[k].centre, told[k].centre, scale, 0, &g.observer,
+                                            TF_RADIUS_MM));
+      for (int at = 0; at < 500 * 500; at++)
+        pixels[at] = hypot (at % 500 + 1 - 250.5, at / 500 + 1 - 250.5) <= 220 ? (float)(at % 7 - 3) : NAN;
+      TfLimbFit fit = tf_limb_fit (pixels, &lies);
+      g_assert_true (fit.found);
+      tf_check_near ("limb centre x", fit.centre_x, 250.5, 0.2);
+      tf_check_near ("limb radius", fit.radius_px, 220, 0.2);
+      tf_limb_judge (&fit, &lies, cautions);
+      g_assert_nonnull (tf_notes_find (cautions, "header-lies"));
+    }
+}
+
+/* An intensity picture has values in its sky, too: stray light. */
+static void
+test_limb_bright (void)
+{
+  TfGeometry g;
+  g_autoptr (GRand) chance = g_rand_new_with_seed (4);
+  g_autofree float *pixels = g_new (float, 500 * 500);
+  fit_of (250.5, 250.5, 220, FALSE, 0, &g);
+  for (int at = 0; at < 500 * 500; at++)
+    {
+      double r = hypot (at % 500 + 1 - 253.0, at / 500 + 1 - 249.0) / 218.0, mu = r < 1.0 ? sqrt (1.0 - r * r) : 0.0;
+      pixels[at] = (float)((r < 1.0 ? 40000 * (0.4 + 0.6 * mu) : 1500.0) + 100 * normal (chance));
+    }
+  TfLimbFit fit = tf_limb_fit_bright (pixels, &g);
+  g_assert_true (fit.found);
+  tf_check_near ("limb centre x", fit.centre_x, 253.0, 0.2);
+  tf_check_near ("limb centre y", fit.centre_y, 249.0, 0.2);
+  tf_check_near ("limb radius", fit.radius_px, 218.0, 0.2);
+}
+
 static void
 test_limb_judged (void)
 {
@@ -172,6 +220,8 @@ void
 add_witness_tests (void)
 {
   g_test_add_func ("/frame/limb/found-to-a-tenth-of-a-pixel", test_limb);
+  g_test_add_func ("/frame/limb/found-far-from-where-the-header-puts-it", test_limb_far);
+  g_test_add_func ("/frame/limb/of-an-intensity-picture-with-stray-light", test_limb_bright);
   g_test_add_func ("/frame/limb/the-header-is-judged", test_limb_judged);
   g_test_add_func ("/frame/orientation/each-reading-is-told", test_orientation);
   g_test_add_func ("/frame/orientation/says-why-it-cannot", test_orientation_unsaid);
