@@ -9,8 +9,16 @@
 const TfNoteKind tf_note_kinds_region[] = {
   { "companion-apart", TF_NOTE_REASON,
     N_ ("The intensity frame is {0:.0f} minutes from the magnetogram, more than {1:.0f}: choose one of the same time.") },
+  { "companion-coarse", TF_NOTE_CAUTION,
+    N_ ("The intensity frame's pixels are too coarse to see spots at {0:.1f} Mm: edges are smeared, umbrae and small spots lost. Areas "
+        "and the spots' tilt are rough.") },
+  { "companion-lies", TF_NOTE_REASON,
+    N_ ("The limb of the intensity frame is not where its header puts it, the header lies: spots would come out in the wrong place. "
+        "Choose another, or correct its geometry.") },
   { "companion-limb-published", TF_NOTE_INFO,
     N_ ("The intensity frame spans too little from centre to limb for a profile of its own: limb darkening is the published law's.") },
+  { "companion-missing-data", TF_NOTE_CAUTION,
+    N_ ("{0:.0f} % of the outline has no value in the intensity frame: spots there are not seen, areas and tilt are those of the rest.") },
   { "companion-no-disk", TF_NOTE_REASON,
     N_ ("Spots are looked for on frames of the disk whose geometry is known: one of the two is not.") },
   { "companion-no-intensity", TF_NOTE_REASON,
@@ -27,6 +35,9 @@ const TfNoteKind tf_note_kinds_region[] = {
     N_ ("The intensity frame shows {0:.0f} % of the outline: choose one with the whole region in view.") },
   { "companion-view-disk", TF_NOTE_REASON,
     N_ ("The intensity frame shows {0:.0f} % of what the magnetogram shows of the Sun, less than half: choose one of the same field of view.") },
+  { "companion-weak-field", TF_NOTE_CAUTION,
+    N_ ("A spot of {1:.0f} millionths lies where the magnetogram shows {0:.0f} G only: the two frames may not lie on each other, or it is "
+        "no spot. Compare them on the plate.") },
   { "complexity-coarse", TF_NOTE_CAUTION,
     N_ ("The frame's pixels are too coarse for the reference resolution of {0:.1f} Mm: gradients and R come out too low. Compare with "
         "frames of the same instrument only.") },

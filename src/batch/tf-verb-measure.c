@@ -94,7 +94,7 @@ print_text (const TfMeasure *m, const TfStudy *study, const TfFigures *figures)
   tf_batch_print (complexity);
   if (figures->spots == NULL)
     return;
-  g_autofree char *spots = tf_spots_dup_text (figures->spots);
+  g_autofree char *spots = tf_spots_dup_text (figures->spots, figures->companion_params);
   tf_batch_print (spots);
 }
 

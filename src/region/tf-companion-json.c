@@ -71,6 +71,7 @@ tf_spots_build_json (const TfSpots *spots, const TfCompanionParams *params, Json
   tf_json_number (builder, "separation_deg", spots->separation_deg);
   tf_json_number (builder, "area_msh", spots->matched ? spots->area_msh : (double)NAN);
   tf_json_number (builder, "umbra_area_msh", spots->matched ? spots->umbra_msh : (double)NAN);
+  tf_json_number (builder, "apart_min", spots->apart_min);
   tf_json_number (builder, "quiet_scatter", spots->quiet_scatter);
   tf_json_number (builder, "quiet_here", spots->quiet_here);
   tf_json_bool (builder, "delta", spots->delta);
@@ -96,7 +97,7 @@ add_note (GString *out, const TfNote *note)
 }
 
 char *
-tf_spots_dup_text (const TfSpots *spots)
+tf_spots_dup_text (const TfSpots *spots, const TfCompanionParams *params)
 {
   GString *out = g_string_new (NULL);
   if (!spots->matched)
@@ -104,6 +105,13 @@ tf_spots_dup_text (const TfSpots *spots)
       add_note (out, spots->refusal);
       return g_string_free (out, FALSE);
     }
+  g_string_append_printf (
+      out,
+      _ ("  intensity frame %.0f min apart, limb darkening by %s; spots below %.3f, umbrae below "
+         "%.3f of the quiet Sun\n"),
+      spots->apart_min,
+      spots->limb == TF_LIMB_OWN ? _ ("its own profile") : _ ("the published law"),
+      params->penumbra, params->umbra);
   if (spots->n > 0)
     g_string_append_printf (
         out,

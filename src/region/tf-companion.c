@@ -126,6 +126,9 @@ find_reason (const TfFrameInfo *field, const TfFrameInfo *intensity, const TfOut
   if (tf_geometry_is_map (&field->geometry) || field->geometry.projection == TF_PROJECTION_NONE
       || intensity->geometry.projection != TF_PROJECTION_TAN)
     return tf_note_new ("companion-no-disk", "");
+  if (tf_notes_find (intensity->cautions, "header-lies") != NULL
+      || tf_notes_find (intensity->cautions, "header-of-another-size") != NULL)
+    return tf_note_new ("companion-lies", "");
   if (!tf_time_is_known (field->time) || !tf_time_is_known (intensity->time))
     return tf_note_new ("companion-no-time", "");
   double minutes = fabs (field->time.s - intensity->time.s) / 60.0;

@@ -69,13 +69,16 @@ typedef struct
   /* area-weighted middles of the two polarities */
   double leading_lon_deg, leading_lat_deg, following_lon_deg, following_lat_deg;
   double axis_bearing_deg, axis_tilt_deg, separation_deg; /* as TfMeasure's, of the spots */
+  double apart_min;     /* between the two frames */
+  TfLimbMethod limb;    /* by which limb darkening was taken out */
   double quiet_scatter; /* rms of the frame's quiet places about 1 */
   double quiet_here;    /* median about the outline over the profile; taken out */
   TfNotes *notes;       /* owned */
 } TfSpots;
 
 /**
- * tf_companion_matches: whether two frames show the same Sun: by role, time, vantage and view.
+ * tf_companion_matches: whether two frames show the same Sun: by role, a limb that is where the
+ * header puts it, time, vantage and view.
  * @outline: (nullable): at the field's time; NULL: half of what the field frame shows of the disk
  *   must be in view
  * @reason: (out) (transfer full) (nullable): why they do not
@@ -103,7 +106,7 @@ tf_measure_region_with (TfMeasure *m, const TfFrame *frame, const TfOutline *out
 void
 tf_spots_build_json (const TfSpots *spots, const TfCompanionParams *params, JsonBuilder *builder);
 /** tf_spots_dup_text: lines for a person. */
-char *tf_spots_dup_text (const TfSpots *spots);
+char *tf_spots_dup_text (const TfSpots *spots, const TfCompanionParams *params);
 
 G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfSpots, tf_spots_clear)
 

@@ -17,7 +17,11 @@ enum
 {
   LEAST_QUIET = 50
 };
-/* Opposite polarity that a lone spot is compared with, G. */
+/* A share of nodes above this where the pixels are too coarse for the resolution is said. */
+static const double COARSE_SAID = 0.1;
+/* A share of the outline above this without a value is said. */
+static const double MISSING_SAID = 0.02;
+/* Opposite polarity that a lone spot is compared with, G; a spot on less is doubted. */
 static const double WEAK_GAUSS = 150.0;
 
 typedef struct
@@ -324,6 +328,36 @@ tell (TfSpots *spots, const Sight *s)
   weigh_polarities (spots, s);
 }
 
+/* What makes the spots less than they seem. @s: its spots largest first. */
+static void
+add_cautions (TfSpots *spots, const Sight *s, const TfFrameInfo *intensity,
+              const TfCompanionParams *params)
+{
+  gsize inside = 0, blind = 0;
+  for (gsize k = 0; k < s->patch->n; k++)
+    {
+      inside += s->field->inside[k];
+      blind += s->field->inside[k] && !s->patch->seen[k];
+    }
+  if ((double)blind > MISSING_SAID * (double)inside)
+    tf_notes_add (spots->notes, "companion-missing-data", "d", 100.0 * (double)blind / (double)inside);
+  if (s->patch->coarse > COARSE_SAID)
+    tf_notes_add (spots->notes, "companion-coarse", "d", params->spot_fwhm_mm);
+  const TfNote *off = tf_notes_find (intensity->cautions, "limb-off");
+  if (off != NULL)
+    tf_notes_add (spots->notes, "limb-off", "dd", tf_note_get_number (off, 0),
+                  tf_note_get_number (off, 1));
+  for (guint k = 0; k < s->found->len; k++)
+    {
+      const TfSpot *spot = &g_array_index (s->found, TfSpot, k);
+      if (spot->delta || fabs (spot->field_gauss) >= WEAK_GAUSS)
+        continue;
+      tf_notes_add (spots->notes, "companion-weak-field", "dd", fabs (spot->field_gauss),
+                    spot->area_msh);
+      return;
+    }
+}
+
 static gint
 by_area (gconstpointer a, gconstpointer b)
 {
@@ -405,7 +439,7 @@ set_nothing (TfSpots *spots)
   spots->leading_lon_deg = spots->leading_lat_deg = spots->following_lon_deg
       = spots->following_lat_deg = NAN;
   spots->axis_bearing_deg = spots->axis_tilt_deg = spots->separation_deg = spots->quiet_scatter
-      = spots->quiet_here = NAN;
+      = spots->quiet_here = spots->apart_min = NAN;
 }
 
 static void
@@ -426,6 +460,7 @@ look (TfSpots *spots, const TfFrame *field, const TfFrame *intensity, const TfOu
   tell (spots, &s);
   set_contours (spots, &s, params);
   g_array_sort (s.found, by_area);
+  add_cautions (spots, &s, tf_frame_get_info (intensity), params);
   spots->n = s.found->len;
   spots->spots = g_memdup2 (s.found->data, s.found->len * sizeof (TfSpot));
   sight_clear (&s);
@@ -453,6 +488,9 @@ tf_spots_find (TfSpots *spots, const TfFrame *field, const TfFrame *intensity,
     }
   if (shape.method == TF_LIMB_PUBLISHED && params->limb == TF_LIMB_OWN)
     tf_notes_add (spots->notes, "companion-limb-published", "");
+  spots->apart_min
+      = fabs (tf_frame_get_info (field)->time.s - tf_frame_get_info (intensity)->time.s) / 60.0;
+  spots->limb = shape.method;
   spots->quiet_scatter = shape.scatter;
   look (spots, field, intensity, here, measure, params, &shape);
 }

@@ -487,11 +487,83 @@ test_refused_and_empty (void)
   g_assert_cmpstr (tf_note_get_code (refused.refusal), ==, "companion-apart");
   g_autoptr (JsonBuilder) builder = json_builder_new ();
   tf_spots_build_json (&refused, &params, builder);
-  g_autofree char *json = tf_json_dup_text (builder, FALSE), *text = tf_spots_dup_text (&refused);
+  g_autofree char *json = tf_json_dup_text (builder, FALSE), *text = tf_spots_dup_text (&refused, &params);
   g_assert_nonnull (strstr (json, "\"matched\":false"));
   g_assert_nonnull (strstr (text, "minutes from the magnetogram"));
   tf_frame_unref (field);
   tf_frame_unref (intensity);
+}
+
+/* The pair of two spots, the companion changed by @change. */
+static void
+find_changed (TfSpots *spots, void (*change) (float *pixels, TfFrameInfo *info))
+{
+  const Scene scene = { 2,
+                        { { 9.0, 10.0, 0.7, 1.5, 2000.0 }, { 3.0, 10.5, 0.5, 1.1, -1800.0 } },
+                        { 0.30, 0.93, -0.23 } };
+  BuilderFrame how;
+  TfFrame *field, *intensity;
+  builder_init (&how, 6.0, 10.0, 1.0);
+  make_pair (&scene, &how, &field, &intensity);
+  const TfGeometry *g = tf_frame_get_geometry (intensity);
+  gsize n = (gsize)g->width * g->height;
+  g_autofree float *pixels = g_memdup2 (tf_frame_get_pixels (intensity), n * sizeof (float));
+  TfFrameInfo *info = tf_frame_info_copy (tf_frame_get_info (intensity));
+  change (pixels, info);
+  g_autoptr (TfFrame) changed = tf_frame_new (info, pixels, NULL);
+  g_autoptr (TfOutline) outline = builder_cap (6.0, 10.0, 6.0);
+  find (spots, field, changed, outline);
+  tf_frame_unref (field);
+  tf_frame_unref (intensity);
+}
+
+static void
+change_nothing (float *pixels, TfFrameInfo *info)
+{
+}
+
+static void
+make_hole (float *pixels, TfFrameInfo *info)
+{
+  const TfGeometry *g = &info->geometry;
+  for (guint y = 0; y < g->height; y++)
+    for (guint x = g->width / 2; x < g->width; x++)
+      pixels[(gsize)y * g->width + x] = NAN;
+}
+
+static void
+shift (float *pixels, TfFrameInfo *info)
+{
+  info->geometry.crpix[1] += 45.0; /* arcsec */
+  tf_geometry_make (&info->geometry);
+}
+
+static void
+tell_lie (float *pixels, TfFrameInfo *info)
+{
+  tf_notes_add (info->cautions, "header-lies", "dddddd", 1.0, 1.0, 1.0, 2.0, 2.0, 2.0);
+}
+
+static void
+test_doubts (void)
+{
+  g_auto (TfSpots) good = { 0 };
+  g_auto (TfSpots) hole = { 0 };
+  g_auto (TfSpots) off = { 0 };
+  g_auto (TfSpots) lies = { 0 };
+  find_changed (&good, change_nothing);
+  g_assert_cmpuint (good.n, ==, 2);
+  g_assert_null (tf_notes_find (good.notes, "companion-missing-data"));
+  g_assert_null (tf_notes_find (good.notes, "companion-weak-field"));
+  g_assert_null (tf_notes_find (good.notes, "companion-coarse"));
+  find_changed (&hole, make_hole);
+  g_assert_true (hole.matched);
+  g_assert_nonnull (tf_notes_find (hole.notes, "companion-missing-data"));
+  find_changed (&off, shift);
+  g_assert_nonnull (tf_notes_find (off.notes, "companion-weak-field"));
+  find_changed (&lies, tell_lie);
+  g_assert_false (lies.matched);
+  g_assert_cmpstr (tf_note_get_code (lies.refusal), ==, "companion-lies");
 }
 
 void
@@ -509,4 +581,5 @@ add_companion_tests (void)
                    test_lone_spot);
   g_test_add_func ("/region/companion/the-leading-spot-is-the-third-witness", test_third_witness);
   g_test_add_func ("/region/companion/no-spots-and-no-match-are-told", test_refused_and_empty);
+  g_test_add_func ("/region/companion/what-makes-spots-doubtful-is-told", test_doubts);
 }
