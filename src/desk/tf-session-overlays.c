@@ -80,7 +80,7 @@ ask (TfSession *self, TfOutline *outline, double mu, gboolean chosen)
     return;
   if (tf_session_get_overlay (self, TF_OVERLAY_INVERSION))
     tf_tracer_ask (self->tracer, TF_TRACE_INVERSION, outline, &self->params, chosen);
-  if (tf_session_get_overlay (self, TF_OVERLAY_SPOTS))
+  if (chosen || tf_session_get_overlay (self, TF_OVERLAY_SPOTS)) /* the slip tells the chosen one's */
     tf_tracer_ask (self->tracer, TF_TRACE_SPOTS, outline, &self->params, chosen);
 }
 
@@ -130,6 +130,16 @@ tf_session_dup_lines (TfSession *self)
       collect (self, lines, tf_region_item_get_row (item)->outline);
     }
   return lines;
+}
+
+const TfSpots *
+tf_session_get_spots (TfSession *self)
+{
+  g_return_val_if_fail (TF_IS_SESSION (self), NULL);
+  TfOutline *outline = self->draft != NULL    ? self->draft
+                       : self->region != NULL ? tf_region_item_get_row (self->region)->outline
+                                              : NULL;
+  return outline != NULL ? tf_tracer_get_spots (self->tracer, outline) : NULL;
 }
 
 gboolean
@@ -278,6 +288,7 @@ tf_session_init_overlays (TfSession *self)
   self->tracer = tf_tracer_new (self->workers, self->pool, traced, self);
   g_signal_connect (self, "frame-changed", G_CALLBACK (tf_session_update_overlays), NULL);
   g_signal_connect (self, "regions-changed", G_CALLBACK (tf_session_update_overlays), NULL);
+  g_signal_connect (self, "frames-changed", G_CALLBACK (tf_session_update_overlays), NULL); /* a companion came */
   g_signal_connect (self, "choice-changed", G_CALLBACK (ask_all), NULL);
 }
 

@@ -22,6 +22,7 @@
 
 #include <gtk/gtk.h>
 
+#include "tf-companion.h"
 #include "tf-deed.h"
 #include "tf-frame-item.h"
 #include "tf-judge.h"
@@ -197,6 +198,9 @@ void tf_session_set_overlay (TfSession *session, TfOverlayPart part, gboolean on
 /** tf_session_dup_lines: (element-type TfOverlayLine): inversion lines and spots that are on and
  * found; their points are borrowed until the next signal. */
 GArray *tf_session_dup_lines (TfSession *session);
+/** tf_session_get_spots: (nullable): what the companion intensity frame shows in the outline that is
+ * drawn or chosen; comes with "overlays-changed" */
+const TfSpots *tf_session_get_spots (TfSession *session);
 /** tf_session_is_tracing: lines are still looked for. */
 gboolean tf_session_is_tracing (TfSession *session);
 typedef struct

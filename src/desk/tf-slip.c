@@ -13,6 +13,7 @@
 #include "tf-slip-frame.h"
 #include "tf-slip-how.h"
 #include "tf-slip-row.h"
+#include "tf-slip-spots.h"
 #include "tf-slip-words.h"
 
 struct _TfSlip
@@ -27,7 +28,7 @@ struct _TfSlip
   GtkWidget *numbers, *keep_box, *keep, *drop, *withdraw, *discard, *judged, *class_box, *joins_box, *proposal_box;
   GtkCheckButton *replaces;
   GtkBox *page, *rows, *more_rows;
-  TfSlipRow *row[TF_N_LINES];
+  TfSlipRow *row[TF_N_LINES], *spots;
   GtkToggleButton *class_alpha, *class_beta, *class_beta_gamma, *class_gamma, *class_delta;
   GtkTextView *note;
   GtkEntry *label_entry, *external_entry;
@@ -279,6 +280,19 @@ show_cautions (TfSlip *self, const TfReading *reading)
   g_string_free (text, TRUE);
 }
 
+/* Beside the flux's tilt and leader, where an intensity frame of the same time is there. */
+static void
+show_spots (TfSlip *self)
+{
+  const TfSpots *spots = tf_session_get_spots (self->session);
+  gtk_widget_set_visible (GTK_WIDGET (self->spots), spots != NULL);
+  if (spots == NULL)
+    return;
+  g_autofree char *value = tf_spots_dup_value (spots), *under = tf_spots_dup_under (spots),
+                  *how = tf_spots_dup_how (spots, tf_session_find_companion (self->session));
+  tf_slip_row_set (self->spots, _ ("spots"), value, under, how);
+}
+
 static void
 show_numbers (TfSlip *self, const TfMeasure *m, const char *method)
 {
@@ -479,6 +493,7 @@ choice_changed (TfSlip *self)
   set_label (self->problem, m == NULL ? tf_session_get_measure_problem (self->session) : NULL);
   if (m != NULL)
     show_numbers (self, m, method);
+  show_spots (self);
   show_judged (self, region, drawing);
 }
 
@@ -520,6 +535,8 @@ tf_slip_set_session (TfSlip *self, TfSession *session)
   self->session = g_object_ref (session);
   tf_slip_frame_set_session (self->frame_page, session);
   g_signal_connect_object (session, "choice-changed", G_CALLBACK (choice_changed), self,
+                           G_CONNECT_SWAPPED);
+  g_signal_connect_object (session, "overlays-changed", G_CALLBACK (show_spots), self,
                            G_CONNECT_SWAPPED);
   g_signal_connect_object (session, "status-changed", G_CALLBACK (status_changed), self,
                            G_CONNECT_SWAPPED);
@@ -628,4 +645,6 @@ tf_slip_init (TfSlip *self)
       self->row[k] = g_object_new (TF_TYPE_SLIP_ROW, NULL);
       gtk_box_append (k < TF_LINE_SHAPE ? self->rows : self->more_rows, GTK_WIDGET (self->row[k]));
     }
+  self->spots = g_object_new (TF_TYPE_SLIP_ROW, "visible", FALSE, NULL);
+  gtk_box_append (self->rows, GTK_WIDGET (self->spots));
 }

@@ -14,6 +14,7 @@ typedef struct
   TfMeasureParams measure;
   GArray *lines; /* of TfOverlayLine, each with points of its own */
   char *why;
+  TfSpots *spots; /* of TF_TRACE_SPOTS, with their refusal; NULL without the intensity frame */
 } Trace;
 
 struct _TfTracer
@@ -63,12 +64,21 @@ trace_new (TfTrace what, TfOutline *outline, const TfMeasureParams *measure, gbo
 }
 
 static void
+spots_free (TfSpots *spots)
+{
+  if (spots != NULL)
+    tf_spots_clear (spots);
+  g_free (spots);
+}
+
+static void
 trace_free (gpointer data)
 {
   Trace *trace = data;
   tf_outline_unref (trace->outline);
   g_array_unref (trace->lines);
   g_free (trace->why);
+  spots_free (trace->spots);
   g_free (trace);
 }
 
@@ -149,14 +159,13 @@ find_spots (Order *order)
       return;
     }
   TfCompanionParams params;
-  TfSpots spots = { 0 };
+  TfSpots *spots = trace->spots = g_new0 (TfSpots, 1);
   tf_companion_params_init (&params);
-  tf_spots_find (&spots, order->frame, order->companion, trace->outline, &trace->measure, &params);
-  if (spots.matched)
-    add_spots (trace, &spots);
-  else if (spots.refusal != NULL)
-    trace->why = tf_note_dup_text (spots.refusal, FALSE);
-  tf_spots_clear (&spots);
+  tf_spots_find (spots, order->frame, order->companion, trace->outline, &trace->measure, &params);
+  if (spots->matched)
+    add_spots (trace, spots);
+  else if (spots->refusal != NULL)
+    trace->why = tf_note_dup_text (spots->refusal, FALSE);
 }
 
 static void
@@ -202,6 +211,7 @@ found (GObject *source, GAsyncResult *result, gpointer data)
       trace->lines = order->trace->lines;
       order->trace->lines = lines;
       trace->why = g_steal_pointer (&order->trace->why);
+      trace->spots = g_steal_pointer (&order->trace->spots);
       trace->done = TRUE;
       if (tracer->companion == NULL && order->companion != NULL)
         tracer->companion = tf_frame_ref (order->companion);
@@ -315,6 +325,14 @@ tf_tracer_get (TfTracer *tracer, TfTrace what, TfOutline *outline, guint *n, cha
     return NULL;
   *n = trace->lines->len;
   return (const TfOverlayLine *)(gconstpointer)trace->lines->data;
+}
+
+const TfSpots *
+tf_tracer_get_spots (TfTracer *tracer, TfOutline *outline)
+{
+  g_return_val_if_fail (tracer != NULL && outline != NULL, NULL);
+  const Trace *trace = find (tracer, TF_TRACE_SPOTS, outline);
+  return trace != NULL && trace->done ? trace->spots : NULL;
 }
 
 gboolean

@@ -41,6 +41,9 @@ void tf_tracer_ask (TfTracer *tracer, TfTrace what, TfOutline *outline,
  * (transfer full): why there are none */
 const TfOverlayLine *
 tf_tracer_get (TfTracer *tracer, TfTrace what, TfOutline *outline, guint *n, char **why);
+/** tf_tracer_get_spots: (nullable): what the spots of an outline tell, or why they tell nothing; NULL
+ * until they were looked for, and when the intensity frame cannot be read. */
+const TfSpots *tf_tracer_get_spots (TfTracer *tracer, TfOutline *outline);
 gboolean tf_tracer_is_busy (const TfTracer *tracer);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfTracer, tf_tracer_free)

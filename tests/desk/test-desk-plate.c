@@ -10,6 +10,7 @@
 
 #include "tf-check.h"
 #include "tf-overlay.h"
+#include "tf-slip-spots.h"
 #include "tf-plate-shot.h"
 #include "tf-preferences-dialog.h"
 #include "tf-preferences.h"
@@ -84,6 +85,35 @@ has_companion (gpointer session)
   return tf_session_find_companion (session) != NULL;
 }
 
+static gboolean
+has_said (gpointer session)
+{
+  return tf_session_get_spots (session) != NULL;
+}
+
+/* Of the chosen hint, with the overlay off: the demo's strongest hint with two spots. */
+static void
+spots_are_told (TfSession *session)
+{
+  g_autoptr (TfRegionItem) hint = g_list_model_get_item (tf_session_get_regions (session), 1);
+  tf_session_set_overlay (session, TF_OVERLAY_SPOTS, FALSE);
+  g_assert_null (tf_session_get_spots (session));
+  tf_session_choose_region (session, hint);
+  test_desk_wait ("what the spots tell", has_said, session);
+  const TfSpots *spots = tf_session_get_spots (session);
+  g_autofree char *value = tf_spots_dup_value (spots), *under = tf_spots_dup_under (spots),
+                  *how = tf_spots_dup_how (spots, tf_session_find_companion (session));
+  g_assert_true (spots->matched);
+  g_assert_nonnull (strstr (value, "tilt +"));
+  g_assert_nonnull (strstr (value, "− leads"));
+  g_assert_nonnull (strstr (under, "2 spots, "));
+  g_assert_nonnull (strstr (under, "too coarse"));
+  g_assert_nonnull (strstr (how, "0 min apart"));
+  g_assert_nonnull (strstr (how, "continuum.fits"));
+  tf_session_choose_region (session, NULL);
+  g_assert_null (tf_session_get_spots (session));
+}
+
 /* A line between the polarities of every chosen hint; spots only with the intensity frame. */
 static void
 lines_are_found (void)
@@ -100,13 +130,13 @@ lines_are_found (void)
   const char *frames[] = { TF_DEMO_FRAMES "/brindle-20131012-0600-continuum.fits", NULL };
   tf_session_add_frames (session, (char *const *)frames);
   test_desk_wait ("the companion", has_companion, session);
-  tf_session_set_overlay (session, TF_OVERLAY_GHOSTS, TRUE); /* asks again */
   test_desk_wait ("the spots", has_traced, session);
   g_assert_cmpuint (count_lines (session, TF_LINE_PENUMBRA), >, 0);
   g_assert_cmpuint (count_lines (session, TF_LINE_UMBRA), >, 0);
   g_assert_cmpuint (count_lines (session, TF_LINE_INVERSION), >, 0);
   tf_session_set_overlay (session, TF_OVERLAY_INVERSION, FALSE);
   g_assert_cmpuint (count_lines (session, TF_LINE_INVERSION), ==, 0);
+  spots_are_told (session);
   tf_session_close (session);
 }
 
