@@ -23,6 +23,7 @@ test_york (void)
   tf_check_near ("slope's deviation", line.slope_sd, 0.057985, 5.1e-7);
   tf_check_near ("intercept's deviation", line.intercept_sd, 0.294971, 5.1e-7);
   tf_check_near ("sum of squares", line.chi2, 11.86635, 5.1e-6);
+  tf_check_near ("a degree of freedom", line.chi2 / (10 - 2), 1.48329, 5.1e-6);
   double bad[10] = { 0 };
   tf_check_nan ("without weights", tf_line_york (pearson_x, pearson_y, bad, york_wy, 10).slope);
   tf_check_nan ("two points", tf_line_york (pearson_x, pearson_y, york_wx, york_wy, 2).slope);
@@ -70,6 +71,10 @@ test_directions (void)
   TfCircular c = tf_circular (nine, 9, FALSE);
   tf_check_near ("mean", c.mean_deg, 51.05, 0.0051);
   tf_check_near ("resultant", c.resultant, 0.7110, 5.1e-5);
+  tf_check_near ("its length", 9 * c.resultant, 6.3989, 5.1e-5);
+  tf_check_near ("sum of cosines", 9 * c.resultant * cos (c.mean_deg * G_PI / 180), 4.0226, 5.1e-5);
+  tf_check_near ("sum of sines", 9 * c.resultant * sin (c.mean_deg * G_PI / 180), 4.9764, 5.1e-5);
+  tf_check_near ("circular variance", 1 - c.resultant, 0.2890, 5.1e-5);
   tf_check_near ("circular deviation", c.sd_deg, 47.32, 0.0051);
   tf_check_near ("angular deviation", c.deviation_deg, 43.56, 0.0051);
   tf_check_near ("concentration", c.concentration, 2.0833, 5.1e-5);

@@ -136,6 +136,20 @@ def check(name, what):
     say(f"{what}: slope of Joy's law (median of tilt over latitude, weighted by latitude)",
         (joy["form"], joy["estimator"]) == ("linear", "robust") and joy["n"] == len(used) and abs(joy["slope"] - slope) < 1e-3,
         f"{slope} here, {joy['slope']} printed", f"{len(used)} tilts here, {joy['n']} printed")
+    there, faults = 0, []
+    for total in laws["axial_dipole"]:
+        own = {}
+        for k in sorted(picks):
+            row = rows[k]
+            if (row["cycle_sure"] == "true" and int(row["cycle"]) == total["cycle"] and row["axial_dipole_gauss"] != ""
+                    and total["hemisphere"] in ("both", "N" if value(row, "lat_deg") > 0 else "S") and total["verdict"] in ("all", row["hale"])):
+                own.setdefault(row["region_number"], []).append(value(row, "axial_dipole_gauss"))
+        there += len(own)
+        if total["regions"] != len(own) or abs(total["sum_gauss"] - sum(np.mean(v) for v in own.values())) > 1e-9:
+            faults.append(f"{total}: {own}")
+    known = sum(rows[k]["axial_dipole_gauss"] != "" for k in picks)  # a table may have none
+    say(f"{what}: the axial dipole by cycle, hemisphere and verdict is the sum over its regions",
+        not faults and (there > 0) == (known > 0), f"{known} picks with a dipole", *faults[:3])
     regions = {row["region_number"] for k, row in enumerate(rows) if k in picks}
     say(f"{what}: regions are counted by their number", len(regions) == laws["sample"]["regions"], f"{len(regions)}, {laws['sample']['regions']}")
 

@@ -569,4 +569,17 @@ def _():
     return f"share {got['hale'][-1]['cluster']}, rows as if alone {plain}; slope {got['joy'][-1]['slope_ci']}"
 
 
+@test("power: how often two shares are told apart is what the binomial distribution and Fisher's test say")
+def _():
+    got, said = json.loads(run("power", "--what", "share", "--first", "0.05", "--second", "0.15", "--least", "50", "--most", "200", "--json")), []
+    for point in got["points"]:
+        n = point["regions"]
+        each = [[(k, p) for k, p in enumerate(stats.binom.pmf(np.arange(n + 1), n, share)) if p > 1e-5] for share in (0.05, 0.15)]
+        exact = sum(p * q for i, p in each[0] for j, q in each[1] if stats.fisher_exact([[i, n - i], [j, n - j]])[1] <= 0.05)
+        said.append(f"{n}: {point['power']:.3f} in {point['runs']} runs, {exact:.3f}")
+        assert abs(point["power"] - exact) < 3.5 * math.sqrt(exact * (1 - exact) / point["runs"]), said
+    assert [p["regions"] for p in got["points"]] == [50, 100, 200]
+    return "; ".join(said)
+
+
 print(f"1..{number}")
