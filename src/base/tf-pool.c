@@ -12,7 +12,8 @@ enum
   HUGE_PAGE = 2 << 20,
   KEEP = 4, /* idle buffers kept by a pool */
   HEAP_MOST = 16 << 20, /* larger room is asked of the system and given back to it */
-  HEAP_KEPT = 64 << 20,
+  HEAP_AHEAD = 64 << 20,
+  HEAP_KEPT = 96 << 20,
 };
 
 struct _TfPool
@@ -168,12 +169,25 @@ tf_pixels_get_n (const TfPixels *pixels)
   return pixels->n;
 }
 
+/* The heap grows by as much as it will need, so that the kernel can be asked for huge pages there. */
+static void
+grow_heap (void)
+{
+  mallopt (M_MMAP_THRESHOLD, 2 * HEAP_AHEAD);
+  char *room = malloc (HEAP_AHEAD);
+  guintptr first = ((guintptr)room + HUGE_PAGE - 1) / HUGE_PAGE * HUGE_PAGE;
+  if (room != NULL)
+    madvise ((void *)first, HEAP_AHEAD - HUGE_PAGE, MADV_HUGEPAGE);
+  free (room);
+}
+
 void
 tf_heap_keep (void)
 {
 #ifdef M_ARENA_MAX
   mallopt (M_ARENA_MAX, 1); /* what one thread gives back another can use */
 #endif
-  mallopt (M_MMAP_THRESHOLD, HEAP_MOST);
   mallopt (M_TRIM_THRESHOLD, HEAP_KEPT);
+  grow_heap ();
+  mallopt (M_MMAP_THRESHOLD, HEAP_MOST);
 }

@@ -34,7 +34,7 @@ float *tf_pixels_get (const TfPixels *pixels);
 gsize tf_pixels_get_n (const TfPixels *pixels);
 
 /** tf_heap_keep: once, as a program begins: smaller room that is given back stays with the process and is handed out again, as a fresh
- * page costs more than most of what is done with it. Frames are not among it. */
+ * page costs more than most of what is done with it; and it is asked for in huge pages. Frames are not among it. */
 void tf_heap_keep (void);
 
 G_DEFINE_AUTOPTR_CLEANUP_FUNC (TfPool, tf_pool_unref)
