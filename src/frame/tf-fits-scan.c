@@ -23,18 +23,51 @@ enum
   PACK_LIMIT = 2000, /* no tile compression makes a picture smaller than 1/2000 */
 };
 
-static GInputStream *
-open_stream (const char *path, gboolean gzip)
+/* Where the headers are read from: the file, or what it is unpacked to. */
+typedef struct
 {
-  g_autoptr (GFile) file = g_file_new_for_path (path);
-  GFileInputStream *stream = g_file_read (file, NULL, NULL);
-  if (stream == NULL || !gzip)
-    return (GInputStream *)stream;
+  const TfFits *fits;
+  goffset at;
+  GInputStream *unpacked; /* NULL: the file itself */
+} Source;
+
+static void
+open_source (Source *source, const TfFits *fits)
+{
+  *source = (Source){ .fits = fits };
+  if (!fits->gzip)
+    return;
+  g_autoptr (GFile) file = g_file_new_for_path (fits->path);
+  g_autoptr (GFileInputStream) stream = g_file_read (file, NULL, NULL);
   g_autoptr (GZlibDecompressor) unpack = g_zlib_decompressor_new (G_ZLIB_COMPRESSOR_FORMAT_GZIP);
-  GInputStream *unpacked
-      = g_converter_input_stream_new (G_INPUT_STREAM (stream), G_CONVERTER (unpack));
-  g_object_unref (stream);
-  return unpacked;
+  if (stream != NULL)
+    source->unpacked
+        = g_converter_input_stream_new (G_INPUT_STREAM (stream), G_CONVERTER (unpack));
+}
+
+static gboolean
+read_block (Source *source, char block[BLOCK])
+{
+  gsize n = 0;
+  if (source->fits->gzip)
+    return source->unpacked != NULL
+           && g_input_stream_read_all (source->unpacked, block, BLOCK, &n, NULL, NULL)
+           && n == BLOCK;
+  source->at += BLOCK;
+  return tf_fits_read_bytes (source->fits, source->at - BLOCK, block, BLOCK);
+}
+
+static gboolean
+skip (Source *source, goffset bytes)
+{
+  source->at += bytes;
+  for (gssize left = (gssize)bytes, done; source->unpacked != NULL && left > 0; left -= done)
+    {
+      done = g_input_stream_skip (source->unpacked, (gsize)left, NULL, NULL);
+      if (done <= 0)
+        return FALSE;
+    }
+  return TRUE;
 }
 
 /* TRUE when one of the block's cards is END. */
@@ -47,23 +80,32 @@ has_end (const char *block)
   return FALSE;
 }
 
+static gboolean
+is_printable (const GByteArray *bytes)
+{
+  for (guint k = 0; k < bytes->len; k++)
+    if (!g_ascii_isprint ((char)bytes->data[k]))
+      return FALSE;
+  return TRUE;
+}
+
 /* The next header, its cards as they stand in @bytes; NULL at the end of the file or when it is
  * not one. */
 static TfHeader *
-next_header (GInputStream *stream, GByteArray *bytes)
+next_header (Source *source, GByteArray *bytes, gboolean *printable)
 {
   char block[BLOCK];
-  gsize n = 0;
   g_byte_array_set_size (bytes, 0);
   for (guint k = 0; k < MAX_BLOCKS; k++)
     {
-      if (!g_input_stream_read_all (stream, block, BLOCK, &n, NULL, NULL) || n < BLOCK)
+      if (!read_block (source, block))
         return NULL;
       if (k == 0 && memcmp (block, "SIMPLE  ", 8) != 0 && memcmp (block, "XTENSION", 8) != 0)
         return NULL;
       g_byte_array_append (bytes, (const guint8 *)block, BLOCK);
       if (has_end (block))
         {
+          *printable = is_printable (bytes);
           for (guint at = 0; at < bytes->len; at++) /* a line end would make it a text */
             if (bytes->data[at] == '\n' || bytes->data[at] == '\r')
               bytes->data[at] = ' ';
@@ -189,30 +231,45 @@ is_sound (const GByteArray *bytes)
          && (!table || is_count (bytes, k + 2, "TFIELDS", 999, &value));
 }
 
-gboolean
-tf_fits_scan (const char *path, gboolean gzip, int *n_sound, GError **error)
+static void
+clear_hdu (gpointer data)
 {
-  g_autoptr (GInputStream) stream = open_stream (path, gzip);
+  tf_header_free (((TfHdu *)data)->header);
+}
+
+/* All headers up to the first that is not sound. */
+static gboolean
+walk (Source *source, const char *path, GArray *hdus, GError **error)
+{
   g_autoptr (GByteArray) cards = g_byte_array_new ();
-  *n_sound = 1;
-  for (guint hdu = 1; stream != NULL && hdu <= MAX_HDUS; hdu++)
+  for (guint hdu = 1; hdu <= MAX_HDUS; hdu++)
     {
-      g_autoptr (TfHeader) header = next_header (stream, cards);
+      TfHdu found = { 0 };
+      g_autoptr (TfHeader) header = next_header (source, cards, &found.printable);
       const char *packed = header != NULL ? tf_header_get (header, "ZIMAGE") : NULL;
       if (header == NULL || !is_sound (cards))
         return TRUE;
-      *n_sound = (int)hdu;
       if (packed != NULL && strcmp (packed, "T") == 0 && !check_tiles (header, path, hdu, error))
         return FALSE;
       double bytes = ceil (data_bytes (header) / BLOCK) * BLOCK;
-      if (!(bytes >= 0 && bytes < 1e12))
+      found.data = source->at;
+      found.header = g_steal_pointer (&header);
+      g_array_append_val (hdus, found);
+      if (!(bytes >= 0 && bytes < 1e12) || !skip (source, (goffset)bytes))
         return TRUE;
-      for (gssize left = (gssize)bytes, done; left > 0; left -= done)
-        {
-          done = g_input_stream_skip (stream, (gsize)left, NULL, NULL);
-          if (done <= 0)
-            return TRUE;
-        }
     }
   return TRUE;
+}
+
+gboolean
+tf_fits_scan (TfFits *fits, GError **error)
+{
+  Source source;
+  fits->hdus = g_array_new (FALSE, FALSE, sizeof (TfHdu));
+  g_array_set_clear_func (fits->hdus, clear_hdu);
+  open_source (&source, fits);
+  gboolean good = walk (&source, fits->path, fits->hdus, error);
+  g_clear_object (&source.unpacked);
+  fits->n_sound = MAX (1, (int)fits->hdus->len);
+  return good;
 }

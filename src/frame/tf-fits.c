@@ -3,14 +3,17 @@
  */
 #include "tf-fits-private.h"
 
+#include <errno.h>
+#include <fcntl.h>
 #include <glib/gi18n-lib.h>
 #include <math.h>
 #include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
 
 enum
 {
   MAX_HDUS = 200,
-  MAX_SIDE = 1 << 17,
 };
 #define UNPACKED_LIMIT G_GINT64_CONSTANT (0x60000000) /* bytes of a gzip file unpacked in memory */
 
@@ -18,9 +21,10 @@ static void
 fail (GError **error, const TfFits *fits, int status, const char *what)
 {
   char reason[FLEN_STATUS] = "";
-  fits_get_errstatus (status, reason);
+  if (tf_cfitsio_load (NULL))
+    cfitsio ()->fits_get_errstatus (status, reason);
   g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s, HDU %d: %s (CFITSIO: %s)"),
-               fits->path, fits->hdu, what, reason);
+               fits->path, MAX (1, fits->hdu), what, reason);
 }
 
 void
@@ -30,35 +34,60 @@ tf_fits_close (TfFits *fits)
     return;
   int status = 0;
   if (fits->file != NULL)
-    fits_close_file (fits->file, &status);
+    cfitsio ()->fits_close_file (fits->file, &status);
+  if (fits->fd >= 0)
+    close (fits->fd);
+  g_clear_pointer (&fits->hdus, g_array_unref);
+  tf_rows_clear (&fits->rows);
   tf_header_free (fits->header);
   g_free (fits->path);
   g_free (fits);
+}
+
+gboolean
+tf_fits_read_bytes (const TfFits *fits, goffset at, void *bytes, gsize n)
+{
+  for (gsize done = 0; done < n;)
+    {
+      ssize_t more = pread (fits->fd, (char *)bytes + done, n - done, at + (goffset)done);
+      if (more == 0 || (more < 0 && errno != EINTR))
+        return FALSE;
+      done += more > 0 ? (gsize)more : 0;
+    }
+  return TRUE;
+}
+
+/* Opens the file as bytes; @n of its first go to @head. */
+static gboolean
+open_bytes (TfFits *fits, guchar *head, gsize *n)
+{
+  struct stat about;
+  fits->fd = open (fits->path, O_RDONLY | O_CLOEXEC);
+  if (fits->fd < 0 || fstat (fits->fd, &about) != 0)
+    return FALSE;
+  ssize_t got = pread (fits->fd, head, *n, 0);
+  fits->size = about.st_size;
+  *n = (gsize)MAX (got, 0);
+  return got >= 0;
 }
 
 /* The first bytes: plain FITS, packed (gzip, compress, zip), or something else. */
 static gboolean
 check_start (TfFits *fits, GError **error)
 {
-  g_autoptr (GFile) file = g_file_new_for_path (fits->path);
-  g_autoptr (GError) problem = NULL;
-  g_autoptr (GFileInputStream) stream = g_file_read (file, NULL, &problem);
-  guchar head[9] = { 0 };
-  gsize n = 0;
-  if (stream == NULL
-      || !g_input_stream_read_all (G_INPUT_STREAM (stream), head, sizeof head, &n, NULL, &problem))
+  guchar head[9] = { 0 }, tail[4] = { 0 };
+  gsize n = sizeof head;
+  if (!open_bytes (fits, head, &n))
     {
       g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ, _ ("%s cannot be read: %s"),
-                   fits->path, problem->message);
+                   fits->path, g_strerror (errno));
       return FALSE;
     }
   fits->gzip = head[0] == 0x1f && head[1] == 0x8b;
   fits->packed = fits->gzip || (head[0] == 0x1f && head[1] == 0x9d);
   if (fits->packed || (n == sizeof head && memcmp (head, "SIMPLE  =", 9) == 0))
     {
-      guchar tail[4] = { 0 };
-      if (!fits->gzip || !g_seekable_seek (G_SEEKABLE (stream), -4, G_SEEK_END, NULL, NULL)
-          || !g_input_stream_read_all (G_INPUT_STREAM (stream), tail, 4, &n, NULL, NULL))
+      if (!fits->gzip || !tf_fits_read_bytes (fits, fits->size - 4, tail, 4))
         return TRUE;
       gint64 unpacked
           = tail[0] | tail[1] << 8 | tail[2] << 16 | (gint64)tail[3] << 24; /* RFC 1952, ISIZE */
@@ -96,21 +125,27 @@ map_compressed (TfHeader *header)
     }
 }
 
+void
+tf_fits_take_header (TfFits *fits, TfHeader *take_header)
+{
+  g_clear_pointer (&fits->header, tf_header_free);
+  fits->header = take_header;
+  if (fits->compressed)
+    map_compressed (fits->header);
+}
+
 static gboolean
 read_header (TfFits *fits)
 {
   int status = 0, n_keys = 0;
   char *text = NULL;
-  if (fits_hdr2str (fits->file, TRUE, NULL, 0, &text, &n_keys, &status) != 0)
+  if (cfitsio ()->fits_hdr2str (fits->file, TRUE, NULL, 0, &text, &n_keys, &status) != 0)
     {
-      fits_clear_errmsg ();
+      cfitsio ()->fits_clear_errmsg ();
       return FALSE;
     }
-  g_clear_pointer (&fits->header, tf_header_free);
-  fits->header = tf_header_read (text, -1);
-  fits_free_memory (text, &status);
-  if (fits->compressed)
-    map_compressed (fits->header);
+  tf_fits_take_header (fits, tf_header_read (text, -1));
+  cfitsio ()->fits_free_memory (text, &status);
   return TRUE;
 }
 
@@ -119,74 +154,126 @@ static gboolean
 take_picture (TfFits *fits)
 {
   int status = 0, type = 0;
-  fits_get_hdu_type (fits->file, &type, &status);
+  cfitsio ()->fits_get_hdu_type (fits->file, &type, &status);
   if (status != 0 || type != IMAGE_HDU)
     return FALSE;
-  fits->compressed = fits_is_compressed_image (fits->file, &status);
-  fits_get_img_paramll (fits->file, TF_FITS_AXES, &fits->bitpix, &fits->n_axes, fits->axes,
-                        &status);
-  fits_clear_errmsg ();
+  fits->compressed = cfitsio ()->fits_is_compressed_image (fits->file, &status);
+  cfitsio ()->fits_get_img_paramll (fits->file, TF_FITS_AXES, &fits->bitpix, &fits->n_axes,
+                                    fits->axes, &status);
+  cfitsio ()->fits_clear_errmsg ();
   if (status != 0 || fits->n_axes < 2 || fits->n_axes > TF_FITS_AXES)
     return FALSE;
   for (int k = 0; k < fits->n_axes; k++)
     if (fits->axes[k] < 1)
       return FALSE;
-  if (fits->axes[0] > MAX_SIDE || fits->axes[1] > MAX_SIDE || !read_header (fits))
+  if (fits->axes[0] > TF_FITS_MAX_SIDE || fits->axes[1] > TF_FITS_MAX_SIDE || !read_header (fits))
     return FALSE;
-  tf_rice_look (fits);
+  fits->rice = tf_rice_look (fits->header);
   return TRUE;
+}
+
+/* Once; nothing that is read here is changed. */
+static gboolean
+open_cfitsio (TfFits *fits, GError **error)
+{
+  int status = 0;
+  const char *why;
+  if (fits->file != NULL)
+    return TRUE;
+  if (!tf_cfitsio_load (&why))
+    {
+      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
+                   _ ("%s cannot be read: the library CFITSIO is not there (%s)"), fits->path, why);
+      return FALSE;
+    }
+  if (cfitsio ()->fits_open_diskfile (&fits->file, fits->path, READONLY, &status) == 0)
+    return TRUE;
+  fits->file = NULL;
+  cfitsio ()->fits_clear_errmsg ();
+  fail (error, fits, status,
+        _ ("the file is cut short or damaged; get it again from its source"));
+  return FALSE;
 }
 
 static gboolean
 move_to (TfFits *fits, int hdu)
 {
   int status = 0, type = 0;
-  if (hdu > fits->n_sound || fits_movabs_hdu (fits->file, hdu, &type, &status) != 0)
+  if (hdu > fits->n_sound || cfitsio ()->fits_movabs_hdu (fits->file, hdu, &type, &status) != 0)
     {
-      fits_clear_errmsg ();
+      cfitsio ()->fits_clear_errmsg ();
       return FALSE;
     }
   fits->hdu = hdu;
+  tf_rows_clear (&fits->rows);
   return TRUE;
+}
+
+/* The first picture behind the current HDU. FALSE and no error: there is none. */
+static gboolean
+find_next (TfFits *fits, GError **error)
+{
+  while (fits->hdu < MAX_HDUS)
+    switch (tf_rows_take (fits, fits->hdu + 1))
+      {
+      case TF_HDU_ROWS:
+        return TRUE;
+      case TF_HDU_NO_PICTURE:
+        fits->hdu++;
+        break;
+      case TF_HDU_OTHER:
+        if (!open_cfitsio (fits, error) || !move_to (fits, fits->hdu + 1))
+          return FALSE;
+        if (take_picture (fits))
+          return TRUE;
+      }
+  return FALSE;
 }
 
 gboolean
 tf_fits_next (TfFits *fits)
 {
-  while (fits->hdu < MAX_HDUS && move_to (fits, fits->hdu + 1))
-    if (take_picture (fits))
-      return TRUE;
-  return FALSE;
+  return find_next (fits, NULL);
 }
 
 static TfFits *
 open_file (const char *path, GError **error)
 {
   g_autoptr (TfFits) fits = g_new0 (TfFits, 1);
-  int status = 0;
   fits->path = g_strdup (path);
-  fits->hdu = 1;
+  fits->fd = -1;
   if (!check_start (fits, error))
     return NULL;
-  if (fits->packed && !fits->gzip)
-    fits->n_sound = MAX_HDUS; /* old compress: only CFITSIO unpacks it */
-  else if (!tf_fits_scan (path, fits->gzip, &fits->n_sound, error))
+  fits->n_sound = MAX_HDUS; /* old compress: only CFITSIO unpacks it */
+  if ((!fits->packed || fits->gzip) && !tf_fits_scan (fits, error))
     return NULL;
-  if (strlen (path) >= FLEN_FILENAME)
-    {
-      g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-                   _ ("%s: the name is too long (1024 bytes at most)"), path);
-      return NULL;
-    }
-  if (fits_open_diskfile (&fits->file, path, READONLY, &status) != 0)
-    {
-      fits->file = NULL;
-      fits_clear_errmsg ();
-      fail (error, fits, status,
-            _ ("the file is cut short or damaged; get it again from its source"));
-      return NULL;
-    }
-  return g_steal_pointer (&fits);
+  if (strlen (path) < FLEN_FILENAME)
+    return g_steal_pointer (&fits);
+  g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
+               _ ("%s: the name is too long (1024 bytes at most)"), path);
+  return NULL;
+}
+
+static gboolean
+find_picture (TfFits *fits, int hdu, GError **error)
+{
+  GError *problem = NULL;
+  if (hdu > 0 && tf_rows_take (fits, hdu) == TF_HDU_ROWS)
+    return TRUE;
+  if (hdu > 0 ? open_cfitsio (fits, &problem) && move_to (fits, hdu) && take_picture (fits)
+              : find_next (fits, &problem))
+    return TRUE;
+  if (problem != NULL)
+    g_propagate_error (error, problem);
+  else if (hdu > 0)
+    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
+                 _ ("%s: HDU %d is not there, damaged or not a picture; leave the HDU out to take "
+                    "the first picture of the file"),
+                 fits->path, hdu);
+  else
+    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
+                 _ ("%s holds no picture of two axes in any HDU; give a FITS image"), fits->path);
+  return FALSE;
 }
 
 TfFits *
@@ -194,21 +281,22 @@ tf_fits_open (const char *path, int hdu, GError **error)
 {
   g_return_val_if_fail (path != NULL, NULL);
   g_autoptr (TfFits) fits = open_file (path, error);
+  if (fits == NULL || !find_picture (fits, hdu, error))
+    return NULL;
+  return g_steal_pointer (&fits);
+}
+
+TfFits *
+tf_fits_open_by_cfitsio (const char *path, int hdu, GError **error)
+{
+  g_return_val_if_fail (path != NULL, NULL);
+  g_autoptr (TfFits) fits = open_file (path, error);
   if (fits == NULL)
     return NULL;
-  gboolean found = hdu > 0 ? move_to (fits, hdu) && take_picture (fits)
-                           : take_picture (fits) || tf_fits_next (fits);
-  if (found)
-    return g_steal_pointer (&fits);
-  if (hdu > 0)
-    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-                 _ ("%s: HDU %d is not there, damaged or not a picture; leave the HDU out to take "
-                    "the first picture of the file"),
-                 path, hdu);
-  else
-    g_set_error (error, TF_FRAME_ERROR, TF_FRAME_ERROR_READ,
-                 _ ("%s holds no picture of two axes in any HDU; give a FITS image"), path);
-  return NULL;
+  g_clear_pointer (&fits->hdus, g_array_unref); /* nothing is seen before CFITSIO */
+  if (!find_picture (fits, hdu, error))
+    return NULL;
+  return g_steal_pointer (&fits);
 }
 
 TfFits *
@@ -260,27 +348,41 @@ tf_fits_get_header (const TfFits *fits)
 gboolean
 tf_fits_may_share (const TfFits *fits)
 {
-  return !fits->packed && fits_is_reentrant ();
+  return fits->rows.at != NULL || (!fits->packed && cfitsio ()->fits_is_reentrant ());
+}
+
+/* Where the picture's data begin and, filled up, end. */
+static gboolean
+find_extent (const TfFits *fits, LONGLONG *data, LONGLONG *end)
+{
+  int status = 0;
+  LONGLONG head = 0;
+  if (fits->rows.at == NULL)
+    return cfitsio ()->fits_get_hduaddrll (fits->file, &head, data, end, &status) == 0;
+  *data = g_array_index (fits->hdus, TfHdu, fits->hdu - 1).data;
+  *end = fits->rows.end;
+  return TRUE;
 }
 
 gboolean
 tf_fits_check_size (const TfFits *fits, GError **error)
 {
-  int status = 0;
-  LONGLONG head = 0, data = 0, end = 0;
-  fits_get_hduaddrll (fits->file, &head, &data, &end, &status);
-  gint64 file_size = fits->file->Fptr->filesize, held = file_size - data;
+  LONGLONG data = 0, end = 0;
+  gboolean known = find_extent (fits, &data, &end);
+  gint64 file_size = fits->file != NULL ? fits->file->Fptr->filesize : fits->size,
+         held = file_size - data;
   double bytes = (double)fits->axes[0] * (double)fits->axes[1] * (double)count_planes (fits)
                  * ABS (fits->bitpix) / 8;
-  gboolean whole
-      = fits->compressed ? end - 2880 < file_size && bytes < 1e13 : bytes <= (double)held;
-  if (status == 0 && whole && fits->rice.compressed && !fits->rice.by_rows && !tf_rice_check (fits))
+  gboolean whole = known
+                   && (fits->compressed ? end - 2880 < file_size && bytes < 1e13
+                                        : bytes <= (double)held);
+  if (whole && fits->rows.at == NULL && !tf_rice_check (fits))
     {
       fail (error, fits, DATA_DECOMPRESSION_ERR,
             _ ("a compressed tile is damaged; get the file again from its source"));
       return FALSE;
     }
-  if (status == 0 && whole)
+  if (whole)
     return TRUE;
   g_autofree char *have = g_format_size ((guint64)MAX (held, 0)),
                   *want = g_format_size ((guint64)MIN (bytes, 1e18));
@@ -298,7 +400,6 @@ tf_fits_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, 
 {
   int status = 0, any = 0;
   float none = __builtin_nanf ("");
-  gboolean damaged = FALSE;
   LONGLONG at[TF_FITS_AXES] = { 1, (LONGLONG)first + 1, 1, 1, 1, 1, 1, 1, 1 };
   LONGLONG rest = (LONGLONG)plane - 1;
   for (int k = 2; k < fits->n_axes; k++)
@@ -306,13 +407,15 @@ tf_fits_read_rows (TfFits *fits, guint plane, guint first, guint n, float *out, 
       at[k] = rest % fits->axes[k] + 1;
       rest /= fits->axes[k];
     }
-  if (!fits->rice.by_rows)
-    fits_read_pixll (fits->file, TFLOAT, at, fits->axes[0] * n, &none, out, &any, &status);
-  else if (!tf_rice_read_rows (fits, plane, first, n, out, &damaged, &status) && damaged)
+  if (fits->rows.at == NULL)
+    cfitsio ()->fits_read_pixll (fits->file, TFLOAT, at, fits->axes[0] * n, &none, out, &any,
+                                 &status);
+  else if (!tf_rows_read (fits, plane, first, n, out))
     status = DATA_DECOMPRESSION_ERR;
   if (status == 0)
     return TRUE;
-  fits_clear_errmsg ();
+  if (fits->file != NULL)
+    cfitsio ()->fits_clear_errmsg ();
   g_autofree char *what = g_strdup_printf (
       _ ("rows %u to %u cannot be read; get the file again from its source"), first + 1, first + n);
   fail (error, fits, status, what);

@@ -4,12 +4,12 @@
 #include "tf-frame-write.h"
 
 #include <errno.h>
-#include <fitsio.h>
 #include <glib/gi18n-lib.h>
 #include <glib/gstdio.h>
 #include <math.h>
 #include <string.h>
 
+#include "tf-cfitsio-private.h"
 #include "tf-frame.h"
 #include "tf-header-private.h"
 
@@ -44,13 +44,13 @@ write_header (fitsfile *file, const TfHeader *header, int *status)
       if (tf_header_is_quoted (header, k) && strlen (text) > 60)
         {
           if (!told_long)
-            fits_write_key_longwarn (file, status);
+            cfitsio ()->fits_write_key_longwarn (file, status);
           told_long = TRUE;
-          fits_write_key_longstr (file, keyword, text, NULL, status);
+          cfitsio ()->fits_write_key_longstr (file, keyword, text, NULL, status);
           continue;
         }
       tf_header_format_card (header, k, card);
-      fits_write_record (file, card, status);
+      cfitsio ()->fits_write_record (file, card, status);
     }
 }
 
@@ -61,12 +61,13 @@ write_scaling (fitsfile *file, const TfFrameWrite *how, int *status)
   LONGLONG blank = how->blank;
   if (how->bitpix < 0)
     return;
-  fits_write_key (file, TDOUBLE, "BSCALE", &scale, "physical = stored * BSCALE + BZERO", status);
-  fits_write_key (file, TDOUBLE, "BZERO", &zero, NULL, status);
+  cfitsio ()->fits_write_key (file, TDOUBLE, "BSCALE", &scale,
+                              "physical = stored * BSCALE + BZERO", status);
+  cfitsio ()->fits_write_key (file, TDOUBLE, "BZERO", &zero, NULL, status);
   if (how->has_blank)
-    fits_write_key (file, TLONGLONG, "BLANK", &blank, "stored value of pixels without a value",
-                    status);
-  fits_set_bscale (file, 1.0, 0.0, status);
+    cfitsio ()->fits_write_key (file, TLONGLONG, "BLANK", &blank,
+                                "stored value of pixels without a value", status);
+  cfitsio ()->fits_set_bscale (file, 1.0, 0.0, status);
 }
 
 static int
@@ -92,9 +93,9 @@ write_integers (fitsfile *file, const float *line, LONGLONG first, guint width,
         half[x] = (short)whole[x];
     }
   if (half != NULL)
-    fits_write_img (file, TSHORT, first, width, half, status);
+    cfitsio ()->fits_write_img (file, TSHORT, first, width, half, status);
   else
-    fits_write_img (file, TINT, first, width, whole, status);
+    cfitsio ()->fits_write_img (file, TINT, first, width, whole, status);
 }
 
 static void
@@ -108,7 +109,7 @@ write_pixels (fitsfile *file, const float *pixels, guint width, guint height,
       if (how->bitpix > 0)
         write_integers (file, line, first, width, how, status);
       else
-        fits_write_img (file, TFLOAT, first, width, (float *)line, status);
+        cfitsio ()->fits_write_img (file, TFLOAT, first, width, (float *)line, status);
     }
 }
 
@@ -120,20 +121,22 @@ tf_fits_write_sums (const char *path, int hdu)
   unsigned long data = 0, whole = 0;
   char text[24];
   int status = 0, closing = 0;
-  if (fits_open_diskfile (&file, path, READWRITE, &status) != 0)
+  if (!tf_cfitsio_load (NULL))
+    return FILE_NOT_OPENED;
+  if (cfitsio ()->fits_open_diskfile (&file, path, READWRITE, &status) != 0)
     return status;
-  fits_movabs_hdu (file, hdu, NULL, &status);
-  fits_update_key_str (file, "CHECKSUM", "0000000000000000", "HDU checksum", &status);
-  fits_update_key_str (file, "DATASUM", "0", "data unit checksum", &status);
-  fits_flush_file (file, &status);
-  fits_get_chksum (file, &data, &whole, &status);
+  cfitsio ()->fits_movabs_hdu (file, hdu, NULL, &status);
+  cfitsio ()->fits_update_key_str (file, "CHECKSUM", "0000000000000000", "HDU checksum", &status);
+  cfitsio ()->fits_update_key_str (file, "DATASUM", "0", "data unit checksum", &status);
+  cfitsio ()->fits_flush_file (file, &status);
+  cfitsio ()->fits_get_chksum (file, &data, &whole, &status);
   g_snprintf (text, sizeof text, "%lu", data);
-  fits_modify_key_str (file, "DATASUM", text, "&", &status);
-  fits_flush_file (file, &status);
-  fits_get_chksum (file, &data, &whole, &status);
-  fits_encode_chksum (whole, TRUE, text);
-  fits_modify_key_str (file, "CHECKSUM", text, "&", &status);
-  fits_close_file (file, &closing);
+  cfitsio ()->fits_modify_key_str (file, "DATASUM", text, "&", &status);
+  cfitsio ()->fits_flush_file (file, &status);
+  cfitsio ()->fits_get_chksum (file, &data, &whole, &status);
+  cfitsio ()->fits_encode_chksum (whole, TRUE, text);
+  cfitsio ()->fits_modify_key_str (file, "CHECKSUM", text, "&", &status);
+  cfitsio ()->fits_close_file (file, &closing);
   return status != 0 ? status : closing;
 }
 
@@ -145,21 +148,23 @@ write_file (const char *path, const TfHeader *header, const float *pixels, guint
   int status = 0, closing = 0;
   long axes[2] = { (long)width, (long)height };
   long tile[2] = { (long)width, 1 };
-  fits_create_diskfile (&file, path, &status);
+  if (!tf_cfitsio_load (NULL))
+    return FILE_NOT_CREATED;
+  cfitsio ()->fits_create_diskfile (&file, path, &status);
   if (status != 0)
     return status;
   if (how->compress)
     {
-      fits_set_compression_type (file, RICE_1, &status);
-      fits_set_tile_dim (file, 2, tile, &status);
+      cfitsio ()->fits_set_compression_type (file, RICE_1, &status);
+      cfitsio ()->fits_set_tile_dim (file, 2, tile, &status);
     }
-  fits_create_img (file, how->bitpix, 2, axes, &status);
+  cfitsio ()->fits_create_img (file, how->bitpix, 2, axes, &status);
   write_scaling (file, how, &status);
   write_header (file, header, &status);
   if (!how->no_date)
-    fits_write_date (file, &status);
+    cfitsio ()->fits_write_date (file, &status);
   write_pixels (file, pixels, width, height, how, &status);
-  fits_close_file (file, &closing);
+  cfitsio ()->fits_close_file (file, &closing);
   if (status == 0)
     status = closing != 0 ? closing : tf_fits_write_sums (path, how->compress ? 2 : 1);
   return status;
@@ -193,12 +198,15 @@ tf_frame_write (const char *path, const TfHeader *header, const float *pixels, g
   int status = write_file (part, header, pixels, width, height, how);
   if (status == 0 && g_rename (part, path) == 0)
     return TRUE;
+  const char *there = g_strerror (errno), *why;
   char reason[FLEN_STATUS] = "";
-  if (status != 0)
-    fits_get_errstatus (status, reason);
+  if (status == 0 || !tf_cfitsio_load (&why))
+    g_strlcpy (reason, status == 0 ? there : why, sizeof reason);
   else
-    g_strlcpy (reason, g_strerror (errno), sizeof reason);
-  fits_clear_errmsg ();
+    {
+      cfitsio ()->fits_get_errstatus (status, reason);
+      cfitsio ()->fits_clear_errmsg ();
+    }
   g_unlink (part);
   g_set_error (
       error, TF_FRAME_ERROR, TF_FRAME_ERROR_WRITE,

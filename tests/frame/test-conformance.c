@@ -189,13 +189,11 @@ test_own_unpacking (void)
         }
       g_assert_true (tf_frame_write (path, NULL, pixels, W, H, &how, NULL));
       g_autoptr (TfFits) fits = tf_fits_open (path, 0, NULL);
-      g_assert_true (fits != NULL && fits->rice.by_rows && tf_fits_check_size (fits, NULL)
-                     && tf_rice_check (fits));
+      g_autoptr (TfFits) other = tf_fits_open_by_cfitsio (path, 0, NULL);
+      g_assert_true (fits != NULL && fits->rows.at != NULL && tf_fits_check_size (fits, NULL));
+      g_assert_true (other != NULL && other->rows.at == NULL && tf_rice_check (other));
       g_assert_true (tf_fits_read_rows (fits, 1, 0, H, pixels, NULL));
-      int status = 0, any = 0;
-      float none = NAN;
-      fits_read_img (fits->file, TFLOAT, 1, W * H, &none, theirs, &any, &status);
-      g_assert_cmpint (status, ==, 0);
+      g_assert_true (tf_fits_read_rows (other, 1, 0, H, theirs, NULL));
       for (int k = 0; k < W * H; k++)
         if (isnan (theirs[k]))
           tf_check_nan ("a blank", (double)pixels[k]);
