@@ -4,7 +4,7 @@
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 #include "tf-export-series.h"
 #include "tf-intake.h"
 #include "tf-ledger-follow.h"

@@ -12,7 +12,6 @@
 #include <json-glib/json-glib.h>
 
 #include "tf-bands.h"
-#include "tf-bundle.h"
 #include "tf-companion.h"
 #include "tf-complexity.h"
 #include "tf-frame.h"
@@ -34,10 +33,14 @@ typedef struct
   const char *words;   /* "FRAME…" */
   const char *summary; /* N_() one sentence */
   const char *example; /* a call that works */
-  int (*run) (int argc, char **argv);
 } TfVerb;
 
+typedef int (*TfVerbFunc) (int argc, char **argv);
+
 extern const TfVerb tf_verbs[]; /* ends with name NULL */
+
+/** tf_verb_load: a verb of the module with tables and drawings. NULL: not there; @why: (out): in the loader's words. */
+TfVerbFunc tf_verb_load (const char *verb, char **why);
 
 int tf_verb_inspect (int argc, char **argv);
 int tf_verb_where (int argc, char **argv);
@@ -47,8 +50,6 @@ int tf_verb_fill (int argc, char **argv);
 int tf_verb_gather (int argc, char **argv);
 int tf_verb_follow (int argc, char **argv);
 int tf_verb_bring (int argc, char **argv);
-/** tf_batch_bring_summary: a daily region summary; -1 when @file is none, else the exit code. @look: nothing is written. */
-int tf_batch_bring_summary (const char *path, const char *file, const char *source, gboolean look, gboolean json);
 int tf_verb_laws (int argc, char **argv);
 int tf_verb_export (int argc, char **argv);
 int tf_verb_check (int argc, char **argv);
@@ -69,24 +70,6 @@ void tf_batch_add_frame_words (GOptionContext *context, TfFrameWords *words);
 gboolean tf_batch_parse (GOptionContext *context, int *argc, char ***argv);
 /** tf_batch_usage: complains that the words are off, names the verb's help; returns TF_EXIT_CALL. */
 int tf_batch_usage (const char *verb, const char *what);
-
-/** TfLawsWords: which study laws runs, and what is kept of it. */
-typedef struct
-{
-  char *study, *name, *person, *save_study, *keep_edition, *against, *figures, *bundle;
-  gboolean keep_study;
-} TfLawsWords;
-void tf_laws_words_clear (TfLawsWords *words);
-G_DEFINE_AUTO_CLEANUP_CLEAR_FUNC (TfLawsWords, tf_laws_words_clear)
-void tf_batch_laws_add_words (GOptionContext *context, TfLawsWords *words);
-/** tf_batch_laws_study: the study that --study names among the words, else that of a bundle, else the default one. @bundle: (out)
- * (transfer full) (nullable): when the words name one in a ledger's place. */
-TfStudy *tf_batch_laws_study (int argc, char **argv, gboolean *from_file, TfBundle **bundle, GError **error);
-/** tf_batch_laws_bundle: runs @study on a bundle's rows and says whether the numbers are the bundle's own. */
-int tf_batch_laws_bundle (const char *path, const TfBundle *bundle, TfStudy *study, gboolean json, const TfLawsWords *words);
-/** tf_batch_laws_keep: saves and keeps what was asked for; compares with an edition. */
-int tf_batch_laws_keep (TfLedger *ledger, TfStudy *study, const TfFindings *findings, gboolean json,
-                        const TfLawsWords *words);
 
 void tf_batch_print (const char *text);
 /** tf_batch_say: one line on standard error. */
@@ -129,11 +112,6 @@ void tf_table_free (TfTable *table);
 void tf_table_add (TfTable *table, const char *format, ...) G_GNUC_PRINTF (2, 3);
 /** tf_table_dup_text: lines indented by two, each ended. */
 char *tf_table_dup_text (const TfTable *table);
-
-/** tf_batch_print_findings: a study's findings for a person. */
-void tf_batch_print_findings (const TfFindings *findings, const TfStudy *study);
-/** tf_batch_export_series: one region through its passages into the table @out; returns the exit code. */
-int tf_batch_export_series (const char *path, const char *out, const char *region, const char *source);
 
 /* -- measures ---------------------------------------------------------------------------------- */
 /** TfFigures: what may stand beside a measure; each pair may be NULL. */

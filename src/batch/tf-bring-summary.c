@@ -3,7 +3,7 @@
  */
 #include <glib/gi18n-lib.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 #include "tf-daily-summary.h"
 #include "tf-json.h"
 

@@ -5,7 +5,7 @@
 #include <stdio.h>
 #include <glib/gi18n-lib.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 #include "tf-export.h"
 #include "tf-json.h"
 #include "tf-ledger-studies.h"

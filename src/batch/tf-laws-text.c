@@ -5,7 +5,7 @@
 #include <math.h>
 #include <stdio.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 
 /* What `laws` tells a person: tables first, then what would have been otherwise, then the sentences
  * and cautions. A star marks what leans on a provisional minimum. */

@@ -4,7 +4,7 @@
 #include <stdio.h>
 #include <glib/gi18n-lib.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 #include "tf-bring.h"
 #include "tf-json.h"
 

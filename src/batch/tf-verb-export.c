@@ -5,7 +5,7 @@
 #include <string.h>
 #include <glib/gi18n-lib.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 #include "tf-export.h"
 #include "tf-export-kinds.h"
 #include "tf-sheets.h"

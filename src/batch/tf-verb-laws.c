@@ -4,7 +4,7 @@
 #include <math.h>
 #include <glib/gi18n-lib.h>
 
-#include "tf-batch.h"
+#include "tf-tables.h"
 #include "tf-findings-figures.h"
 #include "tf-intake.h"
 

@@ -122,6 +122,8 @@ say("every folder has a test program that links the whole of it", wrong)
 
 linked = subprocess.run(["ldd", RUN], stdout=subprocess.PIPE, text=True, check=True).stdout
 say("tiltfield-run does not link GTK", re.findall(r"lib(?:gtk|adwaita)\S*", linked))
+say("tiltfield-run begins without the libraries of tables, drawings and CFITSIO's network, which take longer to load than a frame to read",
+    re.findall(r"lib(?:cfitsio|curl|xml2|archive|cairo|pango)\S*", linked))
 say("no file of src is over 1,000 lines", [short(p) for p, t in texts.items() if t.count("\n") > 1000])
 say("every source file begins with its licence",
     [f for f in files if f.endswith((".c", ".h")) and "SPDX-License-Identifier: GPL-3.0-or-later" not in read(os.path.join(TOP, f))[:200]])
