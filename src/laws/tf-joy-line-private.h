@@ -22,6 +22,7 @@ struct _TfJoyPoints
   double bin_scatter[TF_JOY_BINS]; /* of y; over the whole sample; 0 before it is measured */
   gboolean drawn;                  /* counts are a draw's */
   double sen_slope, sen_step;      /* the whole sample's slope, and how far draws go from it */
+  gboolean sen_known;              /* the slope is; the step is 0 before the first draw */
 };
 
 /** tf_joy_points_order: makes by_ratio, or by_x and by_y, if they are not there yet. */

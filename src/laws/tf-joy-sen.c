@@ -8,18 +8,36 @@
 /* The line of Theil 1950 and Sen 1968 (J. Am. Stat. Assoc. 63, 1379), without a look at every pair.
  *
  * With points in order of x (and of y where x is the same), the pairs whose slope lies below b are
- * the inversions of y - b x, and a merge sort counts them. The median slope is found by halving b.
+ * the inversions of y - b x, and a merge sort counts them. So two slopes are driven towards the median
+ * from both sides until few pairs lie between them; those are the inversions between the orders at the
+ * one and at the other, and are listed.
  */
 
 typedef struct
 {
   double v, w; /* y - b x; count */
+  guint row;
 } Item;
 
+typedef struct
+{
+  double slope, weight;
+} Slope;
+
+static void
+list_pair (GArray *list, const TfJoyPoints *points, const Item *a, const Item *b)
+{
+  double x = points->x[b->row] - points->x[a->row], y = points->y[b->row] - points->y[a->row];
+  const Slope slope = { y / x, a->w * b->w };
+  g_array_append_val (list, slope);
+}
+
 /* Merges the sorted left[0..n_left) and right[0..n_right) into @out; adds the weight of inversions.
+ * @list: (nullable): each of them is added (Slope of its pair in @points).
  */
 static double
-merge (const Item *left, guint n_left, const Item *right, guint n_right, Item *out)
+merge (const Item *left, guint n_left, const Item *right, guint n_right, Item *out,
+       const TfJoyPoints *points, GArray *list)
 {
   double waiting = 0.0, found = 0.0;
   for (guint k = 0; k < n_left; k++)
@@ -34,6 +52,8 @@ merge (const Item *left, guint n_left, const Item *right, guint n_right, Item *o
           continue;
         }
       found += right[j].w * waiting;
+      for (guint k = i; list != NULL && k < n_left; k++)
+        list_pair (list, points, &left[k], &right[j]);
       *out++ = right[j++];
     }
   while (i < n_left)
@@ -43,8 +63,10 @@ merge (const Item *left, guint n_left, const Item *right, guint n_right, Item *o
   return found;
 }
 
+/* Sorts; the sorted items are in @items or in @other, as *sorted says. */
 static double
-count_inversions (Item *items, Item *other, guint n)
+count_inversions (Item *items, Item *other, guint n, const TfJoyPoints *points, GArray *list,
+                  Item **sorted)
 {
   double found = 0.0;
   for (guint width = 1; width < n; width *= 2)
@@ -52,12 +74,14 @@ count_inversions (Item *items, Item *other, guint n)
       for (guint at = 0; at < n; at += 2 * width)
         {
           guint n_left = MIN (width, n - at), n_right = MIN (width, n - at - n_left);
-          found += merge (items + at, n_left, items + at + n_left, n_right, other + at);
+          found += merge (items + at, n_left, items + at + n_left, n_right, other + at,
+                          points, list);
         }
       Item *swap = items;
       items = other;
       other = swap;
     }
+  *sorted = items;
   return found;
 }
 
@@ -83,9 +107,9 @@ count_pairs (const TfJoyPoints *points)
   return 0.5 * (all * all - same);
 }
 
-/* The share of pairs whose slope is less than @slope. */
+/* The points in the order of y - slope x, and the weight of the pairs whose slope is less. */
 static double
-share_below (const Pairs *pairs, double slope)
+sort_at (const Pairs *pairs, double slope, Item **sorted, guint *n_sorted)
 {
   const TfJoyPoints *p = pairs->points;
   guint n = 0;
@@ -93,59 +117,163 @@ share_below (const Pairs *pairs, double slope)
     {
       guint row = p->by_x[k];
       if (p->count[row] > 0.0)
-        pairs->items[n++] = (Item){ p->y[row] - slope * p->x[row], p->count[row] };
+        pairs->items[n++] = (Item){ p->y[row] - slope * p->x[row], p->count[row], row };
     }
-  return count_inversions (pairs->items, pairs->other, n) / pairs->pairs;
+  *n_sorted = n;
+  return count_inversions (pairs->items, pairs->other, n, NULL, NULL, sorted);
 }
 
-/* Whether the slope wanted lies above @slope: the lower median has fewer than @share below it; the
- * upper one is the last with no more than that. */
-static gboolean
-lies_above (const Pairs *pairs, double slope, double share, gboolean upper)
-{
-  double below = share_below (pairs, slope);
-  return upper ? below <= share : below < share;
-}
-
-/* The quantile @share of the pairs' slopes, looked for about @guess, to within @tolerance or to the
- * last digits. */
 static double
-find_slope (const Pairs *pairs, double share, gboolean upper, double guess, double step,
-            double tolerance)
+count_below (const Pairs *pairs, double slope)
 {
-  double low = guess - step, high = guess + step;
-  for (double wider = step; !lies_above (pairs, low, share, upper) && isfinite (low); wider *= 2.0)
-    low -= wider;
-  for (double wider = step; lies_above (pairs, high, share, upper) && isfinite (high); wider *= 2.0)
-    high += wider;
-  while (high - low > fmax (tolerance, 4e-16 * fmax (fabs (low), fabs (high))))
-    {
-      double middle = 0.5 * (low + high);
-      if (!(middle > low && middle < high))
-        break;
-      if (lies_above (pairs, middle, share, upper))
-        low = middle;
-      else
-        high = middle;
-    }
-  return isfinite (low) && isfinite (high) ? 0.5 * (low + high) : NAN;
+  Item *sorted;
+  guint n;
+  return sort_at (pairs, slope, &sorted, &n);
 }
 
-/* The whole sample: as exact as the arithmetic, midway between the two middle slopes of an even
- * number. */
+/* Two slopes with the one that is looked for between them: no more than the weight @target below @low,
+ * more below @high. */
+typedef struct
+{
+  double target, low, high, below_low, below_high;
+} Bracket;
+
+static void
+move_end (Bracket *b, double slope, double below)
+{
+  if (below > b->target)
+    {
+      b->high = slope;
+      b->below_high = below;
+    }
+  else
+    {
+      b->low = slope;
+      b->below_low = below;
+    }
+}
+
+static Bracket
+bracket_about (const Pairs *pairs, double target, double guess, double step)
+{
+  Bracket b = { target, NAN, NAN, 0.0, pairs->pairs };
+  double wider = step, slope = guess;
+  move_end (&b, guess, count_below (pairs, guess));
+  gboolean up = isnan (b.high);
+  while ((isnan (b.low) || isnan (b.high)) && isfinite (slope))
+    {
+      slope += up ? wider : -wider;
+      move_end (&b, slope, count_below (pairs, slope));
+      wider *= 2.0;
+    }
+  return b;
+}
+
+/* Until no more than @most pairs lie between, or the two are as near as @tolerance or as numbers go. A
+ * step goes where the counts say and a little beyond, so that both ends come near; each third goes to the
+ * middle, so that it ends whatever the counts say. */
+static void
+close_in (const Pairs *pairs, Bracket *b, double most, double tolerance)
+{
+  const double beyond = 0.02;
+  for (guint k = 0; b->below_high - b->below_low > most; k++)
+    {
+      double width = b->high - b->low,
+             told = (b->target - b->below_low) / (b->below_high - b->below_low),
+             part = k % 3 == 2 ? 0.5
+                               : CLAMP (told + (k % 3 == 0 ? -beyond : beyond), 0.01, 0.99);
+      if (!(width > fmax (tolerance, 4e-16 * fmax (fabs (b->low), fabs (b->high)))))
+        return;
+      double slope = b->low + part * width;
+      if (!(slope > b->low && slope < b->high))
+        return;
+      move_end (b, slope, count_below (pairs, slope));
+    }
+}
+
+/* A quantile of the slopes, to within @tolerance. */
+static double
+find_nearly (const Pairs *pairs, double share, double guess, double step, double tolerance)
+{
+  Bracket b = bracket_about (pairs, share * pairs->pairs, guess, step);
+  close_in (pairs, &b, 0.0, tolerance);
+  return 0.5 * (b.low + b.high);
+}
+
+static int
+compare_slopes (gconstpointer a, gconstpointer b)
+{
+  double p = ((const Slope *)a)->slope, q = ((const Slope *)b)->slope;
+  return (p > q) - (p < q);
+}
+
+/* The slopes of the pairs between the two ends, in order. */
+static GArray *
+list_between (const Pairs *pairs, const Bracket *b)
+{
+  Item *sorted, *again;
+  guint n;
+  GArray *list = g_array_new (FALSE, FALSE, sizeof (Slope));
+  if (!isfinite (b->low) || !isfinite (b->high))
+    return list;
+  sort_at (pairs, b->low, &sorted, &n);
+  for (guint k = 0; k < n; k++)
+    sorted[k].v = pairs->points->y[sorted[k].row] - b->high * pairs->points->x[sorted[k].row];
+  count_inversions (sorted, sorted == pairs->items ? pairs->other : pairs->items, n, pairs->points,
+                    list, &again);
+  g_array_sort (list, compare_slopes);
+  return list;
+}
+
+/* Midway between the two slopes where half of the weight is reached and passed; @list begins where the
+ * weight @below lies below. NaN when it ends before. */
+static double
+middle_of (const GArray *list, double below, double half)
+{
+  double lower = NAN;
+  for (guint k = 0; k < list->len; k++)
+    {
+      const Slope *s = &g_array_index (list, Slope, k);
+      below += s->weight;
+      if (isnan (lower) && below >= half)
+        lower = s->slope;
+      if (below > half)
+        return 0.5 * (lower + s->slope);
+    }
+  return NAN;
+}
+
+/* The whole sample. Counts are whole numbers: no count is half of the pairs less a quarter, so that the
+ * lower of two middle slopes lies surely between the ends. */
 static double
 find_exactly (const Pairs *pairs, TfJoyPoints *points)
 {
-  double start = tf_joy_line_free_least_squares (points).slope;
+  double start = tf_joy_line_free_least_squares (points).slope, half = 0.5 * pairs->pairs;
   double step = fmax (1e-3 * fabs (start), 1e-6);
-  double low = find_slope (pairs, 0.5, FALSE, start, step, 0.0);
-  double high = find_slope (pairs, 0.5, TRUE, low, step, 0.0);
-  double reach = fmin (0.49, 1.0 / sqrt (points->n)); /* three standard errors of the share */
-  points->sen_slope = 0.5 * (low + high);
-  points->sen_step = find_slope (pairs, 0.5 + reach, FALSE, high, step, 0.01 * step)
-                     - find_slope (pairs, 0.5 - reach, FALSE, low, step, 0.01 * step);
-  points->sen_step = fmax (points->sen_step, 1e-9 * (1.0 + fabs (points->sen_slope)));
+  Bracket b = bracket_about (pairs, half - 0.25, start, step);
+  close_in (pairs, &b, 4.0 * points->n + 64.0, 1e-14 * step);
+  for (double wider = b.high - b.low; !(b.below_high > half) && isfinite (b.high); wider *= 2.0)
+    move_end (&b, b.high + wider, count_below (pairs, b.high + wider));
+  points->sen_slope = 0.5 * (b.low + b.high); /* when too many pairs have one slope */
+  if (!(b.below_high - b.below_low > 64.0 * points->n + 1024.0))
+    {
+      g_autoptr (GArray) list = list_between (pairs, &b);
+      double middle = middle_of (list, b.below_low, half);
+      points->sen_slope = isnan (middle) ? points->sen_slope : middle;
+    }
   return points->sen_slope;
+}
+
+/* How far draws may go: three standard errors of the share. */
+static void
+measure_step (const Pairs *pairs, TfJoyPoints *points)
+{
+  double step = fmax (1e-3 * fabs (points->sen_slope), 1e-6),
+         reach = fmin (0.49, 1.0 / sqrt (points->n));
+  points->sen_step
+      = find_nearly (pairs, 0.5 + reach, points->sen_slope, step, 0.01 * step)
+        - find_nearly (pairs, 0.5 - reach, points->sen_slope, step, 0.01 * step);
+  points->sen_step = fmax (points->sen_step, 1e-9 * (1.0 + fabs (points->sen_slope)));
 }
 
 static double
@@ -170,10 +298,13 @@ tf_joy_line_free_robust (TfJoyPoints *points)
   g_autofree Item *items = g_new (Item, points->n), *other = g_new (Item, points->n);
   pairs.items = items;
   pairs.other = other;
-  gboolean near = points->drawn && points->sen_step > 0.0;
-  double slope = near ? find_slope (&pairs, 0.5, FALSE, points->sen_slope, 0.5 * points->sen_step,
+  if (points->drawn && points->sen_known && !(points->sen_step > 0.0))
+    measure_step (&pairs, points);
+  double slope = points->drawn && points->sen_known
+                     ? find_nearly (&pairs, 0.5, points->sen_slope, 0.5 * points->sen_step,
                                     1e-3 * points->sen_step)
-                      : find_exactly (&pairs, points);
+                     : find_exactly (&pairs, points);
+  points->sen_known |= !points->drawn;
   double x = median_of (points, points->by_x, points->x),
          y = median_of (points, points->by_y, points->y);
   return (TfJoyLine){ slope, y - slope * x };

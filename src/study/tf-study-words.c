@@ -33,14 +33,14 @@ all_tilts (const TfFindings *findings)
   return NULL;
 }
 
-/* "mu-below 3, cmd-beyond 12", by key; NULL for nothing. */
+/* "cmd-beyond (12); mu-below (3)"; NULL for nothing. */
 static char *
 dup_counts (GHashTable *counts)
 {
   g_autoptr (GList) keys = g_list_sort (g_hash_table_get_keys (counts), (GCompareFunc)g_strcmp0);
   g_autoptr (GString) text = g_string_new (NULL);
   for (GList *l = keys; l != NULL; l = l->next)
-    g_string_append_printf (text, "%s%s %u", text->len > 0 ? ", " : "", (char *)l->data,
+    g_string_append_printf (text, "%s%s (%u)", text->len > 0 ? "; " : "", (char *)l->data,
                             GPOINTER_TO_UINT (g_hash_table_lookup (counts, l->data)));
   return text->len > 0 ? g_string_free (g_steal_pointer (&text), FALSE) : NULL;
 }

@@ -196,6 +196,25 @@ test_theil_sen_by_every_pair (void)
     }
 }
 
+/* Four points in five on one line: most pairs have one and the same slope, which no closing in can part. */
+static void
+test_theil_sen_of_one_slope (void)
+{
+  for (int off = 0; off < 2; off++)
+    {
+      g_autoptr (TfSample) sample = tf_sample_new ();
+      for (guint k = 0; k < 3000; k++)
+        {
+          TfSampleRow row = test_laws_row (1 + 0.01 * k, 0);
+          row.axis_tilt_deg = 0.5 * (1 + 0.01 * k) + (off == 1 && k % 5 == 0 ? (k % 10 == 0 ? 20 : -20) : 0);
+          tf_sample_add (sample, &row);
+        }
+      TfJoyParams params = joy_params (TF_JOY_LINEAR_FREE, TF_JOY_ROBUST);
+      params.draws = 0;
+      tf_check_near ("slope", fit_all (sample, &params).slope, 0.5, 1e-12);
+    }
+}
+
 /* The default estimator is the weighted median of tilt / |lat|. */
 static void
 test_default_is_a_weighted_median (void)
@@ -434,6 +453,7 @@ test_laws_add_joy (void)
   g_test_add_func ("/laws/joy/pearsons-points", test_pearsons_points);
   g_test_add_func ("/laws/joy/sens-example", test_sens_example);
   g_test_add_func ("/laws/joy/theil-sen-is-the-median-of-every-pair", test_theil_sen_by_every_pair);
+  g_test_add_func ("/laws/joy/theil-sen-of-one-slope", test_theil_sen_of_one_slope);
   g_test_add_func ("/laws/joy/the-default-is-a-weighted-median", test_default_is_a_weighted_median);
   g_test_add_func ("/laws/joy/the-robust-slope-bears-wild-tilts", test_robust_is_robust);
   g_test_add_func ("/laws/joy/a-region-twice-is-still-one", test_clusters);
