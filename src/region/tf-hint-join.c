@@ -65,6 +65,7 @@ TfHintCluster
 tf_hint_sum (const TfHintCluster *a, const TfHintCluster *b)
 {
   TfHintCluster sum = *a;
+  sum.area_mm2 += b->area_mm2;
   for (guint sign = 0; sign < 2; sign++)
     {
       sum.flux[sign] += b->flux[sign];

@@ -73,9 +73,13 @@ const TfOption tf_hint_options[] = {
     N_ ("a region smaller than this share of the other may be joined all the same"),
     AT (nest_small) },
   /* parting */
-  { "part-gain", TF_OPTION_NUMBER, "", 0.5, 0.0, 10.0, NULL,
+  { "part-gain", TF_OPTION_NUMBER, "", 0.5, 0.01, 10.0, NULL,
     N_ ("two hills of a region stand for themselves when that saves this share of the way to the other sign"),
     AT (part_gain) },
+  { "part-compact", TF_OPTION_NUMBER, "", 0.3, 0.01, 10.0, NULL,
+    N_ ("the same share where both hills are compact"), AT (part_compact) },
+  { "part-gauss", TF_OPTION_NUMBER, "G", 90.0, 0.0, 5000.0, NULL,
+    N_ ("mean smoothed field from which a hill is compact"), AT (part_gauss) },
   { "part-flux", TF_OPTION_NUMBER, "Mx", 5e20, 0.0, 1e24, NULL,
     N_ ("least flux of each part"), AT (part_mx) },
   /* left-overs */

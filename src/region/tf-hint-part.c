@@ -5,11 +5,14 @@
 /* One region or two? A reading costs the way its flux must go to the other sign, and flux that finds none the longest plausible way. Two
  * hills of a small region that were joined one by one to a large neighbour close over a much shorter way by themselves, and their
  * neighbour loses nothing; one pair of poles out of the middle of a quadrupole would leave the others the longer way. Total length of the
- * connections as the measure: after Georgoulis & Rust 2007, ApJ 661, L109. */
+ * connections as the measure: after Georgoulis & Rust 2007, ApJ 661, L109. Two compact hills, strong for their ground, are more likely a
+ * region than shards of one plage: less is asked of them. */
 
 #include <math.h>
 
 #include "tf-hint-private.h"
+
+static const double CM2_IN_MM2 = 1e16;
 
 /* The hills of one region: signed flux, and for each the sum of flux * flux * way over all hills of the other sign. */
 typedef struct
@@ -82,7 +85,14 @@ is_region (const double flux[2], const TfHintParams *p)
   return total >= p->part_mx && MIN (flux[0], flux[1]) >= p->nest_weaker * total;
 }
 
-/* What is saved when hills @a (positive) and @b stand for themselves, as a share of what the smaller part's flux costs in the whole. */
+static gboolean
+is_compact (const TfHintCluster *hill, const TfHintParams *p)
+{
+  return tf_hint_total (hill) >= p->part_gauss * hill->area_mm2 * CM2_IN_MM2;
+}
+
+/* What is saved when hills @a (positive) and @b stand for themselves, as a share of what the smaller part's flux costs in the whole, by the
+ * share that is asked for. */
 static double
 gain_of (const Region *r, guint a, guint b)
 {
@@ -94,8 +104,9 @@ gain_of (const Region *r, guint a, guint b)
   double saved = cost_of (r->sum, r->all_ways, p) - cost_of (part, own, p)
                  - cost_of (rest, r->all_ways - r->ways[a] - r->ways[b] + own, p);
   gboolean smaller = part[0] + part[1] <= rest[0] + rest[1];
+  gboolean compact = is_compact (hill_at (r->pieces, r->hill[a]), p) && is_compact (hill_at (r->pieces, r->hill[b]), p);
   double from = smaller ? r->ways[a] : r->all_ways - r->ways[a], to = smaller ? r->ways[b] : r->all_ways - r->ways[b];
-  return saved / (from / r->sum[1] + to / r->sum[0]);
+  return saved / (from / r->sum[1] + to / r->sum[0]) / (compact ? p->part_compact : p->part_gain);
 }
 
 /* The first hill that is @in the pair or out of it becomes the root of all such. */
@@ -138,7 +149,7 @@ take_pair (TfHintPieces *pieces, guint root)
             best_b = b;
           }
       }
-  gboolean taken = best >= pieces->params->part_gain;
+  gboolean taken = best >= 1.0;
   if (taken)
     {
       set_apart (pieces, &r, best_a, best_b, TRUE);

@@ -158,6 +158,7 @@ add_cell (TfHintCluster *cluster, const TfHintGrid *g, gsize at)
   guint sign = g->field[at] > 0.0f ? 0 : 1;
   tf_hint_grid_unit (g, (double)(at % g->n) + 0.5, (double)(at / g->n) + 0.5, unit);
   cluster->flux[sign] += flux;
+  cluster->area_mm2 += g->cell_mm * g->cell_mm;
   for (guint k = 0; k < 3; k++)
     cluster->place[sign][k] += flux * unit[k];
 }

@@ -33,6 +33,7 @@ typedef struct
 {
   double flux[2];      /* Mx */
   double place[2][3];  /* sum of flux * unit vector */
+  double area_mm2;
   int into;            /* index of the cluster it was joined to; itself while it stands alone */
 } TfHintCluster;
 

@@ -49,6 +49,8 @@ typedef struct
   double nest_small;
   /* parting */
   double part_gain;
+  double part_compact;
+  double part_gauss;
   double part_mx;
   /* left-overs */
   double single_weaker;

@@ -173,9 +173,9 @@ test_even (void)
   tf_check_near ("the other the larger", two / one, 1.0, 0.02);
 }
 
-/* Four hills on the equator that were joined to one region, @flux in units of 1e21 Mx; into how many is it parted? */
+/* Four hills on the equator of mean field @gauss that were joined to one region, @flux in units of 1e21 Mx; into how many is it parted? */
 static guint
-parts_of (const double lon[4], const double flux[4])
+parts_of (const double lon[4], const double flux[4], double gauss)
 {
   TfHintParams params;
   TfHintGrid grid = { .radius_mm = 695.7 };
@@ -188,6 +188,7 @@ parts_of (const double lon[4], const double flux[4])
       TfHintCluster hill = { .into = (int)k };
       guint sign = flux[k] < 0.0 ? 1 : 0;
       hill.flux[sign] = fabs (flux[k]) * 1e21;
+      hill.area_mm2 = hill.flux[sign] / gauss / 1e16;
       tf_sphere_unit (lon[k], 0.0, hill.place[sign]);
       for (guint j = 0; j < 3; j++)
         hill.place[sign][j] *= hill.flux[sign];
@@ -211,14 +212,17 @@ parts_of (const double lon[4], const double flux[4])
 static void
 test_parts (void)
 {
+  const double wide = 30.0, compact = 200.0, close_by[] = { 0.0, 7.0, 8.0, 9.5 };
   const double beside[] = { 0.0, 7.0, 9.0, 11.0 }, four[] = { 0.0, 4.0, 5.0, 9.0 };
   const double small[] = { 10.0, -10.0, 1.0, -1.0 }, flipped[] = { -10.0, 10.0, -1.0, 1.0 }, even[] = { 5.0, -5.0, 5.0, -5.0 };
   const double faint[] = { 10.0, -10.0, 0.2, -0.2 }, lopsided[] = { 10.0, -10.0, 1.0, -0.3 };
-  g_assert_cmpuint (parts_of (beside, small), ==, 2);
-  g_assert_cmpuint (parts_of (beside, flipped), ==, 2);
-  g_assert_cmpuint (parts_of (four, even), ==, 1);
-  g_assert_cmpuint (parts_of (beside, faint), ==, 1);
-  g_assert_cmpuint (parts_of (beside, lopsided), ==, 1);
+  g_assert_cmpuint (parts_of (beside, small, wide), ==, 2);
+  g_assert_cmpuint (parts_of (beside, flipped, wide), ==, 2);
+  g_assert_cmpuint (parts_of (four, even, wide), ==, 1);
+  g_assert_cmpuint (parts_of (beside, faint, wide), ==, 1);
+  g_assert_cmpuint (parts_of (beside, lopsided, wide), ==, 1);
+  g_assert_cmpuint (parts_of (close_by, small, wide), ==, 1); /* shards of a plage ... */
+  g_assert_cmpuint (parts_of (close_by, small, compact), ==, 2); /* ... or two poles */
 }
 
 static void
