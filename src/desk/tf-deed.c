@@ -44,6 +44,7 @@ tf_deed_copy (const TfDeed *deed)
   copy->region = deed->region;
   copy->author = deed->author;
   copy->joins = deed->joins;
+  copy->ends_draft = deed->ends_draft;
   copy->origin = deed->origin;
   copy->outline = deed->outline != NULL ? tf_outline_ref (deed->outline) : NULL;
   if (deed->kind == TF_DEED_KEEP)
@@ -121,6 +122,7 @@ run_keep (TfDeed *deed, TfLedger *ledger, gint64 person, GError **error)
                       .follows = deed->follows,
                       .region = region_of (deed, ledger, person),
                       .origin = deed->origin,
+                      .ends_draft = deed->ends_draft,
                       .outline = deed->outline,
                       .measure = &deed->measure,
                       .method = deed->method };

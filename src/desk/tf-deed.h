@@ -53,6 +53,7 @@ typedef struct
   char *person;
   gint64 frame, hint, follows, region, author;
   TfJoins joins;
+  gboolean ends_draft; /* what is kept was the draft */
   TfMarkOrigin origin;
   TfOutline *outline;
   TfMeasure measure;

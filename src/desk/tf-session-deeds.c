@@ -153,6 +153,7 @@ deed_of_draft (TfSession *self)
 {
   TfDeed *deed = tf_session_new_deed (self, TF_DEED_KEEP);
   deed->origin = TF_MARK_DRAWN;
+  deed->ends_draft = TRUE;
   deed->joins = TF_JOINS_BY_OUTLINE;
   if (tf_session_get_replaces (self))
     take_place (self, deed, self->replaced);

@@ -173,12 +173,12 @@ void
 tf_session_discard_draft (TfSession *self)
 {
   g_return_if_fail (TF_IS_SESSION (self));
-  gboolean stored = self->draft != NULL;
-  if (stored && !self->keeping)
+  gboolean given_up = self->draft != NULL && !self->keeping; /* else the ledger knows that it was kept */
+  if (given_up)
     tf_session_remember (self);
   tf_session_drop_draft (self);
   self->draft_looked = TRUE;
-  if (stored)
+  if (given_up)
     tf_session_store_draft (self);
   tf_session_judge_choice (self);
   tf_session_emit (self, TF_SIGNAL_CHOICE);

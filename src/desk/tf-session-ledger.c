@@ -217,7 +217,7 @@ take_reading (TfSession *self, Reading *r)
       g_clear_pointer (&self->joins, g_hash_table_unref);
       self->joins = g_steal_pointer (&r->joins);
       tf_session_replace_regions (self, r->rows);
-      gboolean newest = tf_session_get_pending (self) == 0 && !self->refresh_again;
+      gboolean newest = tf_session_get_pending (self) == 0 && !self->outdated;
       if (newest) /* else the ledger may have had an older draft yet */
         {
           tf_session_forget_hoped (self);
@@ -274,6 +274,7 @@ start_reading (TfSession *self)
   asked->person = g_strdup (self->person);
   asked->study = tf_study_copy (self->laws->study);
   self->refreshing = TRUE;
+  self->outdated = FALSE;
   self->refresh_again = self->refresh_all = FALSE;
   tf_lane_push (self->reader, self, self->reading, read_in_lane, asked, reading_free, reading_free,
                 read_done, NULL);

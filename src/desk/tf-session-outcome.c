@@ -114,7 +114,7 @@ changes_marks (const TfDeed *deed)
 static void
 saved (TfWriter *writer, TfDeed *deed, TfSession *self)
 {
-  self->wrote = TRUE;
+  self->wrote = self->outdated = TRUE;
   self->can_undo = deed->can_undo;
   self->can_redo = deed->can_redo;
   if (deed->kind == TF_DEED_DRAFT)

@@ -51,6 +51,7 @@ struct _TfSession
   GCancellable *reading; /* raised when the ledger is let go */
   TfWriter *writer;
   gboolean refreshing, refresh_again, refresh_all;
+  gboolean outdated; /* something was written since the reading under way began */
   gint64 version; /* of the file, as last read */
   guint watch;
   char *person;

@@ -8,6 +8,13 @@
 #include "tf-ledger-private.h"
 
 gboolean
+tf_draft_remove (TfLedger *ledger, gint64 frame, gint64 person, GError **error)
+{
+  return tf_run (ledger, error, "DELETE FROM draft WHERE frame = ?1 AND person = ?2", "ii", frame,
+                 person);
+}
+
+gboolean
 tf_ledger_set_draft (TfLedger *ledger, gint64 frame, gint64 person, const char *text,
                      GError **error)
 {
@@ -21,8 +28,7 @@ tf_ledger_set_draft (TfLedger *ledger, gint64 frame, gint64 person, const char *
                       "INSERT INTO draft (frame, person, text, saved) VALUES (?1, ?2, ?3, ?4)"
                       " ON CONFLICT (frame, person) DO UPDATE SET text = ?3, saved = ?4",
                       "iiti", frame, person, text, now)
-            : tf_run (ledger, error, "DELETE FROM draft WHERE frame = ?1 AND person = ?2", "ii",
-                      frame, person);
+            : tf_draft_remove (ledger, frame, person, error);
   if (!ok)
     {
       tf_ledger_rollback (ledger);

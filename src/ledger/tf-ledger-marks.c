@@ -248,7 +248,10 @@ tf_ledger_keep (TfLedger *ledger, const TfMarkDeed *deed, GError **error)
   if (!tf_ledger_begin (ledger, error))
     return 0;
   gint64 id = keep (ledger, deed, error);
-  return end_deed (ledger, id != 0, error) ? id : 0;
+  gboolean done = id != 0
+                  && (!deed->ends_draft
+                      || tf_draft_remove (ledger, deed->frame, deed->person, error));
+  return end_deed (ledger, done, error) ? id : 0;
 }
 
 /* -- withdraw, drop

@@ -109,6 +109,11 @@ gboolean tf_replica_choose (TfLedger *ledger, GError **error);
 gboolean tf_replica_begin (TfLedger *ledger, GError **error); /* inside a transaction */
 void tf_replica_store_state (TfLedger *ledger);               /* after a commit */
 
+/* -- tf-ledger-draft.c
+ * ----------------------------------------------------------------------------- */
+/* Inside a transaction. */
+gboolean tf_draft_remove (TfLedger *ledger, gint64 frame, gint64 person, GError **error);
+
 /* -- tf-ledger-acts.c
  * ------------------------------------------------------------------------------ */
 /* Appends one act and projects it; inside a transaction. @body: an object built to its end. */

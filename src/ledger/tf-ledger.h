@@ -188,6 +188,7 @@ typedef struct
   const TfMeasure *measure;
   const char *method;      /* canonical option text */
   const char *label;       /* nullable */
+  gboolean ends_draft;     /* the person's draft on the frame is this mark from now on */
 } TfMarkDeed;
 
 /** tf_ledger_keep: returns the mark's local key, 0 on error. */

@@ -363,6 +363,33 @@ test_draft (Fixture *f, gconstpointer data)
   g_assert_null (tf_ledger_dup_draft (f->ledger, frame, person));
 }
 
+/* A draft that is kept is no draft any more, at whatever moment the program ends; another's stays. */
+static void
+test_draft_kept (Fixture *f, gconstpointer data)
+{
+  gint64 person = north (f), frame = fixture_frame (f->ledger, 0),
+         other = tf_ledger_person (f->ledger, "south", NULL);
+  g_autoptr (TfOutline) outline = fixture_outline (1);
+  g_auto (TfMeasure) measure = { 0 };
+  fixture_measure (&measure, 1);
+  TfMarkDeed deed = { .frame = frame,
+                      .person = person,
+                      .origin = TF_MARK_DRAWN,
+                      .outline = outline,
+                      .measure = &measure,
+                      .method = "m" };
+  g_assert_true (tf_ledger_set_draft (f->ledger, frame, person, "stroke", NULL));
+  g_assert_true (tf_ledger_set_draft (f->ledger, frame, other, "another", NULL));
+  g_assert_cmpint (tf_ledger_keep (f->ledger, &deed, NULL), !=, 0);
+  g_autofree char *beside = tf_ledger_dup_draft (f->ledger, frame, person);
+  g_assert_cmpstr (beside, ==, "stroke"); /* a hint was kept beside it */
+  deed.ends_draft = TRUE;
+  g_assert_cmpint (tf_ledger_keep (f->ledger, &deed, NULL), !=, 0);
+  g_assert_null (tf_ledger_dup_draft (f->ledger, frame, person));
+  g_autofree char *others = tf_ledger_dup_draft (f->ledger, frame, other);
+  g_assert_cmpstr (others, ==, "another");
+}
+
 /* The disk as a person puts it: kept, replaced, undone, taken back to the header; nobody else's. */
 static void
 test_geometry (Fixture *f, gconstpointer data)
@@ -409,4 +436,5 @@ add_acts_tests (void)
   FIXTURE_TEST ("/ledger/acts/undo-is-one-persons-own", test_undo_is_one_persons);
   FIXTURE_TEST ("/ledger/acts/the-journal-says-who-did-what-and-when", test_journal);
   FIXTURE_TEST ("/ledger/acts/a-draft-lives-until-it-is-taken-away", test_draft);
+  FIXTURE_TEST ("/ledger/acts/a-draft-ends-with-its-keep", test_draft_kept);
 }

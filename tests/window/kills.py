@@ -15,8 +15,15 @@ DEEDS = "SELECT count(*) FROM act WHERE kind IN ('keep', 'drop', 'undo')"
 
 
 def choose_hint(window):
+    """A draft that outlived a kill lies on its frame and may come after the frame's counts: it is put away first."""
+    def is_chosen():
+        if "draft" in window.plate():
+            window.action("cancel-drawing")
+            window.action("next-hint")
+        return "chosen: hint" in window.plate()
+
     window.action("next-hint")
-    window.wait("a hint to be chosen", lambda: "chosen: hint" in window.plate())
+    window.wait("a hint to be chosen", is_chosen)
 
 
 def wait_counts(window, marks, hints):
@@ -56,14 +63,6 @@ def judge(window, chance):
     window.action("undo")
     wait_counts(window, marks, hints)
     return 2
-
-
-def put_draft_away(window):
-    """A draft that outlived the kill; the frame in view is the one it lies on, or it does not matter."""
-    window.wait("a frame on the plate", window.counts)
-    if "draft" in window.plate():
-        window.action("cancel-drawing")
-        window.wait("the draft to go", lambda: "draft" not in window.plate())
 
 
 # -- the deed that is killed: prepared, then done without waiting for anything; each returns how many acts it is ---------------
@@ -136,7 +135,6 @@ def _(given):
             for turn in range(ROUNDS):
                 if turn > 0:
                     w.start()
-                    put_draft_away(w)
                 to_hints(w, 5)
                 last = KILLED[turn % len(KILLED)]
                 shown = w.value(ledger, DEEDS)
