@@ -280,21 +280,29 @@ may_keep (TfSession *self)
   return self->person != NULL;
 }
 
-TfDeed *
-tf_session_study_deed (TfSession *self, const TfStudy *study)
+static TfDeed *
+study_deed (TfSession *self, const TfStudy *study, double floor_gauss)
 {
   g_autoptr (TfStudy) kept = tf_study_copy (study);
-  const TfLawsAnswer *answer = self->laws->answer;
   kept->version = 0; /* the ledger numbers versions; equal texts are one */
-  kept->even_floor_gauss = answer != NULL && answer->findings != NULL
-                               ? answer->findings->even_floor_gauss
-                               : study->even_floor_gauss;
+  kept->even_floor_gauss = floor_gauss;
   TfDeed *deed = tf_deed_new (TF_DEED_STUDY, self->person);
   deed->study = g_strdup (study->name);
   deed->text = tf_study_dup_text (kept);
   return deed;
 }
 
+/* With the floor that its numbers were worked out with. */
+TfDeed *
+tf_session_study_deed (TfSession *self, const TfStudy *study)
+{
+  const TfLawsAnswer *answer = self->laws->answer;
+  gboolean known = answer != NULL && answer->findings != NULL;
+  return study_deed (self, study,
+                     known ? answer->findings->even_floor_gauss : study->even_floor_gauss);
+}
+
+/* Only the divides' options change: a study that has no floor of its own still has the ledger's. */
 TfDeed *
 tf_session_divide_options_deed (TfSession *self, const TfDivideParams *params)
 {
@@ -304,7 +312,7 @@ tf_session_divide_options_deed (TfSession *self, const TfDivideParams *params)
   take_moved_options (&kept->divide, params);
   g_free (self->laws->kept_text);
   self->laws->kept_text = dup_plain_text (kept);
-  return tf_session_study_deed (self, kept);
+  return study_deed (self, kept, kept->even_floor_gauss);
 }
 
 /* The divides of a study that has another name in the ledger, or none. */

@@ -139,23 +139,29 @@ dup_likes (const char *name)
   return g_strjoinv (", ", (char **)likes->pdata);
 }
 
+/* Why a column is not taken. */
+static char *
+dup_rest (const char *name)
+{
+  g_autofree char *likes = dup_likes (name);
+  if (strcmp (name, "polarity_tilt_deg") != 0 && tf_column_is_brought (name))
+    return g_strdup_printf (_ ("%s: the map does not take it"), name);
+  if (strcmp (name, "polarity_tilt_deg") == 0 || tf_column_find (name) != NULL)
+    return g_strdup_printf (_ ("%s: judged here anew"), name);
+  if (likes != NULL)
+    return g_strdup_printf (_ ("%s: not known; if one of these is meant, say so in a map: %s"), name,
+                            likes);
+  return g_strdup_printf (_ ("%s: not known"), name);
+}
+
 static void
 list_the_rest (TfBrought *b, const TfCells *table, const GArray *columns)
 {
   for (guint k = 0; k < table->columns->len; k++)
     {
       const char *name = g_array_index (table->columns, TfCellsColumn, k).name;
-      if (is_used (columns, k) || is_listed (b->not_taken, name))
-        continue;
-      g_autofree char *likes = dup_likes (name);
-      gboolean judged = strcmp (name, "polarity_tilt_deg") == 0;
-      for (const TfColumn *c = tf_columns; c->name != NULL; c++)
-        judged |= strcmp (c->name, name) == 0 && !tf_column_is_brought (name);
-      g_ptr_array_add (
-          b->not_taken,
-          judged          ? g_strdup_printf (_ ("%s: judged here anew"), name)
-          : likes != NULL ? g_strdup_printf (_ ("%s: not known; if one of these is meant, say so in a map: %s"), name, likes)
-                          : g_strdup_printf (_ ("%s: not known"), name));
+      if (!is_used (columns, k) && !is_listed (b->not_taken, name))
+        g_ptr_array_add (b->not_taken, dup_rest (name));
     }
   for (guint k = 0; k < table->not_read->len; k++)
     g_ptr_array_add (b->not_taken, g_strdup (g_ptr_array_index (table->not_read, k)));
@@ -362,14 +368,19 @@ group (TfBrought *b, const GArray *columns, const TfColumnMap *map, gboolean row
   g_ptr_array_add (
       b->said,
       alone ? g_strdup_printf (rows_alone ? _ ("Every row is taken as a region of its own, as asked (%u).")
-                                          : _ ("The table names no regions and has no longitude: every "
+                                          : _ ("No names of regions and no longitude are taken: every "
                                                "row is taken as a region of its own (%u). Intervals "
                                                "are then too narrow where rows repeat a region."),
                                b->n_regions)
-            : g_strdup_printf (_ ("The table names no regions: its %u rows were linked from day to day "
-                                  "on their place (%s) into %u groups. Each row is a pick; intervals "
-                                  "cluster by these groups. --rows-alone takes every row as its own."),
-                               b->entries->len, longitude, b->n_regions));
+            : g_strdup_printf (
+                  ngettext ("No names of regions are taken: %u rows were linked from day to day on their place (%s) "
+                            "into %u group. Each row is a pick; intervals cluster by groups. --rows-alone takes "
+                            "every row as its own.",
+                            "No names of regions are taken: %u rows were linked from day to day on their place (%s) "
+                            "into %u groups. Each row is a pick; intervals cluster by groups. --rows-alone takes "
+                            "every row as its own.",
+                            b->n_regions),
+                  b->entries->len, longitude, b->n_regions));
   return alone ? "alone" : "place";
 }
 

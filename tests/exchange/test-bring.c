@@ -244,6 +244,7 @@ test_linking (void)
   assert_groups (named, (const guint[]){ 0, 1, 0, 1, 4 }, "column", 3);
   assert_groups (linked, (const guint[]){ 0, 1, 0, 0, 4 }, "place", 3);
   assert_groups (alone, (const guint[]){ 0, 1, 2, 3, 4 }, "alone", 5);
+  g_assert_cmpstr (linked->not_taken->pdata[0], ==, "region: the map does not take it");
   g_assert_cmpstr (g_array_index (named->entries, TfOutsideEntry, 0).passage, ==, "A");
   g_assert_cmpstr (g_array_index (linked->entries, TfOutsideEntry, 0).passage, !=,
                    g_array_index (linked->entries, TfOutsideEntry, 2).passage);
