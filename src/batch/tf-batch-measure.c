@@ -26,6 +26,8 @@ tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *f
   tf_json_string (builder, "instrument", info->instrument);
   tf_measure_build_members (measure, builder);
   tf_complexity_build_members (figures->complexity, figures->complexity_params, builder);
+  json_builder_set_member_name (builder, "frame_cautions");
+  tf_notes_build_json (info->cautions, builder);
   json_builder_set_member_name (builder, "spots");
   tf_spots_build_json (figures->spots, figures->companion_params, builder);
   tf_verdict_build_members (&verdict, &row, builder);
@@ -96,6 +98,18 @@ tf_batch_dup_measure_text (const TfMeasure *m, const TfStudy *study)
       g_string_append_printf (out, _ ("  caution: %s\n"), text);
     }
   return g_string_free (out, FALSE);
+}
+
+void
+tf_batch_print_frame_cautions (const TfFrame *frame)
+{
+  const TfNotes *cautions = tf_frame_get_info (frame)->cautions;
+  for (guint k = 0; k < tf_notes_get_n (cautions); k++)
+    {
+      g_autofree char *text = tf_note_dup_text (tf_notes_get (cautions, k), FALSE);
+      g_autofree char *line = g_strdup_printf (_ ("caution about the frame: %s\n"), text);
+      tf_batch_print (line);
+    }
 }
 
 TfLedger *

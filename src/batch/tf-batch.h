@@ -125,6 +125,8 @@ typedef struct
 /** tf_batch_build_measure: the whole `measure` object of one frame as the builder's next value. What @figures do not have is null. */
 void tf_batch_build_measure (JsonBuilder *builder, const char *path, const TfFrame *frame, const TfMeasure *measure,
                              const char *method, const TfStudy *study, const TfFigures *figures);
+/** tf_batch_print_frame_cautions: what holds for all that is measured on the frame, as that its header lies. */
+void tf_batch_print_frame_cautions (const TfFrame *frame);
 /** tf_batch_dup_measure_text: the same for a person, a few lines. */
 char *tf_batch_dup_measure_text (const TfMeasure *measure, const TfStudy *study);
 

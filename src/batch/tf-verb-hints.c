@@ -100,6 +100,7 @@ print_hints (const char *path, const TfFrame *frame, const GPtrArray *hints, con
 {
   print_rule (&words->hint);
   printf (ngettext ("%s: %u hint\n", "%s: %u hints\n", hints->len), path, hints->len);
+  tf_batch_print_frame_cautions (frame);
   for (guint k = 0; k < hints->len; k++)
     {
       const TfHint *hint = g_ptr_array_index (hints, k);

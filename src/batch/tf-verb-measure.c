@@ -125,6 +125,7 @@ measure (Words *words, const char *path)
       tf_batch_print_json (builder);
       return TF_EXIT_DONE;
     }
+  tf_batch_print_frame_cautions (frame);
   print_text (&m, study, &figures);
   return TF_EXIT_DONE;
 }

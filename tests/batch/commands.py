@@ -304,6 +304,29 @@ def _():
     call("measure", field[0]["file"], "--cap", "0,0,8", "--companion", field[0]["file"], code=3)
 
 
+@test("hints and measure say that a frame's header lies, a companion that lies is refused")
+def _():
+    def grown(path, name):
+        """The same pixels, each told to be a tenth larger."""
+        def card(match):
+            return (match[1] + b"%20.9f" % (1.1 * float(match[2]))).ljust(len(match[0]))
+        with open(path, "rb") as file:
+            data = re.sub(rb"(CDELT[12] *= )( *[0-9.]+)", card, file.read())
+        lies = os.path.join(work, name)
+        with open(lies, "wb") as file:
+            file.write(data)
+        return lies
+    field, = demo("*20131012-0600")
+    bright, = demo("*20131012-0600-continuum")
+    for verb in (("hints",), ("measure", "--cap", "-4,14,8")):
+        assert "header lies" not in call(*verb, field).stdout
+        assert "header lies" in call(*verb, grown(field, "lies.fits")).stdout, verb
+    measure = document("measure", "--json", os.path.join(work, "lies.fits"), "--cap", "-4,14,8")
+    assert "header-lies" in [caution["code"] for caution in measure["frame_cautions"]]
+    spots = document("measure", "--json", field, "--cap", "-4,14,8", "--companion", grown(bright, "bright-lies.fits"))["spots"]
+    assert spots["reason"]["code"] == "companion-lies" and not spots["matched"], spots
+
+
 @test("fill skips what is there, goes on past bad files, and check finds nothing wrong")
 def _():
     ledger = os.path.join(work, "one.ledger")
