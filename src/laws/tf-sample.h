@@ -47,7 +47,6 @@ typedef struct
   gint8 straddles;        /* poles on opposite sides of the equator */
   gint8 size;             /* 0 region, 1 ephemeral, -1 unknown */
   gint8 born;             /* on the visible disk: 1 yes, 0 no, -1 the source does not say */
-  gint8 bracketed;        /* greatest flux neither the first nor the last mark; -1 not asked */
   guint16 instrument;     /* number of the instrument; 0 not known */
   TfOrigin origin;
 } TfSampleRow;
@@ -60,12 +59,21 @@ TfSample *tf_sample_new (void);
 TfSample *tf_sample_new_sized (guint n);
 void tf_sample_free (TfSample *sample);
 /** tf_sample_new_part: some rows of another, by their places there: none at first. @whole: must live as
- * long, and is not to change. */
+ * long, and is not to change. Of a part: once it is filled, what that is a part of must live. */
 TfSample *tf_sample_new_part (const TfSample *whole);
-/** tf_sample_take_whole: a part frees its whole with itself from now on. */
+/** tf_sample_take_whole: a part that is filled has its whole; it goes with it at the latest. */
 void tf_sample_take_whole (TfSample *part, TfSample *whole);
 /** tf_sample_add_place: to a part: the row at that place of the whole. */
 void tf_sample_add_place (TfSample *part, guint place);
+/** tf_sample_get_root: of a part what its places are in, NULL else. tf_sample_get_places: one a row. */
+const TfSample *tf_sample_get_root (const TfSample *sample);
+const guint *tf_sample_get_places (const TfSample *part);
+/** tf_sample_copy: (transfer full): the same rows, no part of anything. */
+TfSample *tf_sample_copy (const TfSample *sample);
+/** tf_sample_set_bracketed: of the row added last: its greatest flux is neither that of the first nor of
+ * the last mark. tf_sample_get_bracketed: -1: not asked. A part has it of its whole. */
+void tf_sample_set_bracketed (TfSample *sample, gboolean bracketed);
+int tf_sample_get_bracketed (const TfSample *sample, guint k);
 /** tf_sample_row_init: every quantity "absent". */
 void tf_sample_row_init (TfSampleRow *row);
 /** tf_sample_add: not to a part. */

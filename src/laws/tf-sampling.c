@@ -53,7 +53,7 @@ typedef struct
 typedef struct
 {
   const TfSampleRow *best, *first, *last; /* best: NULL while none is within the limits */
-  guint marks;
+  guint marks, place; /* place: of the best among the marks */
   Sums *sums; /* of the mean, else NULL */
 } Passage;
 
@@ -143,7 +143,7 @@ mean_row (const Passage *passage)
 }
 
 static void
-take_mark (Passage *passage, const TfSampleRow *row, const TfSamplingParams *params)
+take_mark (Passage *passage, const TfSampleRow *row, guint place, const TfSamplingParams *params)
 {
   passage->marks++;
   if (passage->first == NULL || row->time.s < passage->first->time.s)
@@ -153,7 +153,10 @@ take_mark (Passage *passage, const TfSampleRow *row, const TfSamplingParams *par
   if (!is_within (row, params))
     return;
   if (passage->best == NULL || is_better (row, passage->best, params))
-    passage->best = row;
+    {
+      passage->best = row;
+      passage->place = place;
+    }
   if (params->rule == TF_SAMPLING_MEAN)
     {
       passage->sums = passage->sums != NULL ? passage->sums : g_new0 (Sums, 1);
@@ -173,7 +176,7 @@ gather (const TfSample *marks, const TfSamplingParams *params)
       guint number = tf_distinct_add (numbers, row->passage);
       if (number == passages->len)
         g_array_set_size (passages, number + 1);
-      take_mark (&g_array_index (passages, Passage, number), row, params);
+      take_mark (&g_array_index (passages, Passage, number), row, k, params);
     }
   return passages;
 }
@@ -187,11 +190,18 @@ pick (const Passage *passage, const TfSamplingParams *params, TfSample *picks,
       tally->without += passage->marks;
       return;
     }
-  TfSampleRow row = params->rule == TF_SAMPLING_MEAN ? mean_row (passage) : *passage->best;
-  if (params->rule == TF_SAMPLING_FLUX)
-    row.bracketed = passage->best != passage->first && passage->best != passage->last;
-  tally->not_bracketed += row.bracketed == 0;
-  tf_sample_add (picks, &row);
+  if (params->rule == TF_SAMPLING_MEAN)
+    {
+      TfSampleRow row = mean_row (passage);
+      tf_sample_add (picks, &row);
+      return;
+    }
+  tf_sample_add_place (picks, passage->place);
+  if (params->rule != TF_SAMPLING_FLUX)
+    return;
+  gboolean bracketed = passage->best != passage->first && passage->best != passage->last;
+  tf_sample_set_bracketed (picks, bracketed);
+  tally->not_bracketed += !bracketed;
 }
 
 static gboolean
@@ -205,12 +215,12 @@ static TfSample *
 pick_alone (const TfSample *marks, const TfSamplingParams *params, TfSamplingTally *tally)
 {
   guint n = tf_sample_get_n (marks);
-  TfSample *picks = tf_sample_new_sized (n);
+  TfSample *picks = tf_sample_new_part (marks);
   tally->passages = n;
   for (guint k = 0; k < n; k++)
     {
       const TfSampleRow *mark = tf_sample_get (marks, k);
-      const Passage passage = { is_within (mark, params) ? mark : NULL, mark, mark, 1, NULL };
+      const Passage passage = { is_within (mark, params) ? mark : NULL, mark, mark, 1, k, NULL };
       pick (&passage, params, picks, tally);
     }
   return picks;
@@ -229,10 +239,11 @@ tf_sampling_pick (const TfSample *marks, const TfSamplingParams *params, TfSampl
     }
   g_autoptr (GArray) passages = gather (marks, params);
   gboolean every = params->rule == TF_SAMPLING_EVERY;
-  TfSample *picks = tf_sample_new_sized (every ? tf_sample_get_n (marks) : passages->len);
+  TfSample *picks = params->rule == TF_SAMPLING_MEAN ? tf_sample_new_sized (passages->len)
+                                                     : tf_sample_new_part (marks);
   own.passages = passages->len;
   for (guint k = 0; every && k < tf_sample_get_n (marks); k++)
-    tf_sample_add (picks, tf_sample_get (marks, k));
+    tf_sample_add_place (picks, k);
   for (guint p = 0; p < passages->len; p++)
     {
       Passage *passage = &g_array_index (passages, Passage, p);

@@ -48,7 +48,7 @@ typedef struct
  * tf_sampling_pick:
  * @marks: every mark that passed the mark conditions, in any order
  * @tally: (out) (nullable)
- * Returns: (transfer full): the picks, in the order in which their passages first come; under (d) all
+ * Returns: (transfer full): the picks (but for means a part of @marks), in the order in which their passages first come; under (d) all
  * marks. A pick's row number is its mark's; of a mean, that of the mark nearest the central meridian,
  * and a leader on which its marks differ is unsure.
  */

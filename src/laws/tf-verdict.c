@@ -57,25 +57,23 @@ steepness (const TfSampleRow *row)
 static const char *
 find_reason (const TfSampleRow *row, const TfVerdictParams *params)
 {
-  const struct
-  {
-    gboolean holds;
-    const char *code;
-  } reasons[] = {
-    { tf_verdict_weaker_share (row) < params->weaker_share - SHARE_STEP, "hale-unipolar" },
-    { row->leading_polarity == 0, "hale-no-polarity" },
-    { isnan (row->lat_deg), "hale-no-place" },
-    { straddles (row), "hale-straddles" },
-    { fabs (row->lat_deg) < params->equator_deg || hemisphere_of (row) == 0, "hale-equator" },
-    { row->mu < params->mu_min, "hale-near-limb" },
-    { steepness (row) > params->steep_deg, "hale-steep" },
-    { row->leading_sure == 0, "hale-leader-unsure" },
-    { row->witnesses_differ == 1, "hale-witnesses-differ" },
-  };
-  for (guint k = 0; k < G_N_ELEMENTS (reasons); k++)
-    if (reasons[k].holds)
-      return reasons[k].code;
-  return NULL;
+  if (tf_verdict_weaker_share (row) < params->weaker_share - SHARE_STEP)
+    return "hale-unipolar";
+  if (row->leading_polarity == 0)
+    return "hale-no-polarity";
+  if (isnan (row->lat_deg))
+    return "hale-no-place";
+  if (straddles (row))
+    return "hale-straddles";
+  if (fabs (row->lat_deg) < params->equator_deg || hemisphere_of (row) == 0)
+    return "hale-equator";
+  if (row->mu < params->mu_min)
+    return "hale-near-limb";
+  if (steepness (row) > params->steep_deg)
+    return "hale-steep";
+  if (row->leading_sure == 0)
+    return "hale-leader-unsure";
+  return row->witnesses_differ == 1 ? "hale-witnesses-differ" : NULL;
 }
 
 static TfVerdictKind

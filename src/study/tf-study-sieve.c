@@ -148,7 +148,6 @@ tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *m
   TfSamplingTally tally;
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   TfSample *found = tf_sampling_pick (marks, &study->sampling, &tally), *picks = tf_sample_new_part (found);
-  tf_sample_take_whole (picks, found);
   tally.not_bracketed = 0;
   for (guint k = 0; k < tf_sample_get_n (found); k++)
     {
@@ -160,9 +159,10 @@ tf_study_picks (const TfStudy *study, const TfStudyRows *rows, const TfSample *m
         reason = ask_more (study->region_conditions, study, divides, rows, s, findings);
       if (!settle (reason, conditions, REGION_CONDITIONS, findings))
         continue;
-      tally.not_bracketed += s->bracketed == 0;
+      tally.not_bracketed += tf_sample_get_bracketed (found, k) == 0;
       tf_sample_add_place (picks, k);
     }
+  tf_sample_take_whole (picks, found);
   if (findings != NULL)
     {
       findings->sampling = tally;

@@ -63,9 +63,10 @@ fill_row (TfWhatIf *row, const TfVariant *v, const TfSample *sample, const TfVer
 }
 
 static gboolean
-is_kept (const TfVariant *v, const TfSampleRow *row)
+is_kept (const TfVariant *v, const TfSample *sample, guint k)
 {
-  return !(v->bracketed && row->bracketed == 0) && !(v->marks_alone && row->origin == TF_ORIGIN_HINT);
+  return !(v->bracketed && tf_sample_get_bracketed (sample, k) == 0)
+         && !(v->marks_alone && tf_sample_get (sample, k)->origin == TF_ORIGIN_HINT);
 }
 
 /* The rows of @sample that the variant keeps, where its options cannot say so. */
@@ -74,7 +75,7 @@ keep (const TfVariant *v, const TfSample *sample)
 {
   TfSample *part = tf_sample_new_part (sample);
   for (guint k = 0; k < tf_sample_get_n (sample); k++)
-    if (is_kept (v, tf_sample_get (sample, k)))
+    if (is_kept (v, sample, k))
       tf_sample_add_place (part, k);
   return part;
 }

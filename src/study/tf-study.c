@@ -204,7 +204,8 @@ findings_new (double floor)
 void
 tf_study_hold (const TfFindings *findings, const TfSample *sample, TfVerdict *verdicts)
 {
-  for (guint k = 0; k < tf_sample_get_n (sample); k++)
+  guint n = g_hash_table_size (findings->changing) == 0 ? 0 : tf_sample_get_n (sample);
+  for (guint k = 0; k < n; k++)
     if (verdicts[k].kind != TF_VERDICT_CANNOT_SAY
         && g_hash_table_contains (findings->changing,
                                   GUINT_TO_POINTER (tf_sample_get (sample, k)->passage)))
@@ -279,11 +280,11 @@ keep_every (TfFindings *findings, const TfStudyRows *rows)
       findings->taken = tf_study_taken_ref ((TfStudyTaken *)rows->taken);
       return;
     }
-  TfSample *own = tf_sample_new_sized (tf_sample_get_n (findings->every));
-  for (guint k = 0; k < tf_sample_get_n (findings->every); k++)
-    tf_sample_add (own, tf_sample_get (findings->every, k));
-  tf_sample_free (findings->every);
-  findings->every = own;
+  TfSample *every = findings->every, *sample = findings->sample;
+  findings->every = tf_sample_copy (every);
+  findings->sample = tf_sample_copy (sample);
+  tf_sample_free (every);
+  tf_sample_free (sample);
 }
 
 TfFindings *

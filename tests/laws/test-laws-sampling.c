@@ -47,7 +47,7 @@ test_greatest_flux (void)
   g_autoptr (TfSample) picks = tf_sampling_pick (marks, &params, &tally);
   g_assert_cmpuint (tf_sample_get_n (picks), ==, 3);
   g_assert_cmpuint (tf_sample_get (picks, 0)->row, ==, 4);
-  g_assert_cmpint (tf_sample_get (picks, 0)->bracketed, ==, 1);
+  g_assert_cmpint (tf_sample_get_bracketed (picks, 0), ==, 1);
   g_assert_cmpuint (tf_sample_get (picks, 1)->row, ==, 11 + 1);
   g_assert_cmpuint (tf_sample_get (picks, 2)->row, ==, 22 + 9);
   g_assert_cmpuint (tally.passages, ==, 3);
@@ -56,8 +56,8 @@ test_greatest_flux (void)
   g_autoptr (TfSample) all = tf_sampling_pick (marks, &params, &tally);
   g_assert_cmpuint (tf_sample_get (all, 1)->row, ==, 11);
   g_assert_cmpuint (tf_sample_get (all, 2)->row, ==, 22 + 10);
-  g_assert_cmpint (tf_sample_get (all, 1)->bracketed, ==, 0);
-  g_assert_cmpint (tf_sample_get (all, 2)->bracketed, ==, 0);
+  g_assert_cmpint (tf_sample_get_bracketed (all, 1), ==, 0);
+  g_assert_cmpint (tf_sample_get_bracketed (all, 2), ==, 0);
   g_assert_cmpuint (tally.not_bracketed, ==, 2);
 }
 
@@ -70,7 +70,7 @@ test_central_meridian (void)
   g_autoptr (TfSample) picks = tf_sampling_pick (marks, &params, NULL);
   g_assert_cmpuint (tf_sample_get_n (picks), ==, 1);
   g_assert_cmpuint (tf_sample_get (picks, 0)->row, ==, 5);
-  g_assert_cmpint (tf_sample_get (picks, 0)->bracketed, ==, -1);
+  g_assert_cmpint (tf_sample_get_bracketed (picks, 0), ==, -1);
 }
 
 /* Days 2 to 8 lie within 45 deg: the mean tilt is 10; across +-90 the mean is axial. */
