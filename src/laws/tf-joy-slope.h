@@ -14,4 +14,8 @@ G_BEGIN_DECLS
 TfJoyFit tf_joy_slope (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
                        const TfJoyParams *params);
 
+/** tf_joy_x, tf_joy_y: what stands for |lat| and tilt in the straight line of that form. */
+double tf_joy_x (int form, double abs_lat_deg);
+double tf_joy_y (int form, double tilt_deg);
+
 G_END_DECLS

@@ -102,6 +102,18 @@ tf_joy_unit (TfJoyForm form)
 }
 
 double
+tf_joy_x (int form, double abs_lat_deg)
+{
+  return forms[form].x (abs_lat_deg);
+}
+
+double
+tf_joy_y (int form, double tilt_deg)
+{
+  return forms[form].y (tilt_deg);
+}
+
+double
 tf_joy_tilt (const TfJoyFit *fit, TfJoyForm form, double abs_lat_deg)
 {
   double intercept = isnan (fit->intercept) ? 0.0 : fit->intercept;

@@ -8,6 +8,7 @@
 
 #include "tf-constants.h"
 #include "tf-joy-line-private.h"
+#include "tf-joy-slope.h"
 
 enum
 {
@@ -64,18 +65,6 @@ compare_places (gconstpointer a, gconstpointer b)
   const Place *p = a, *q = b;
   int by_key = (p->key > q->key) - (p->key < q->key);
   return by_key != 0 ? by_key : (p->row > q->row) - (p->row < q->row);
-}
-
-static double
-form_x (int form, double lat)
-{
-  return form == TF_JOY_LINEAR ? lat : sin (lat * TF_DEG);
-}
-
-static double
-form_y (int form, double tilt)
-{
-  return form == TF_JOY_SINE_OF_TILT ? sin (tilt * TF_DEG) : tilt;
 }
 
 gboolean
@@ -185,10 +174,10 @@ order_ratios (TfTally *tally)
   for (guint k = 0; k < tally->n; k++)
     {
       const TfSampleRow *row = tf_sample_get (tally->sample, k);
-      double x = form_x (tally->joy.form, fabs (row->lat_deg));
+      double x = tf_joy_x (tally->joy.form, fabs (row->lat_deg));
       tally->place[k] = G_MAXUINT;
       if (tally->rows[k].in_line && x > 0)
-        places[n++] = (Place){ form_y (tally->joy.form, row->axis_tilt_deg) / x, k };
+        places[n++] = (Place){ tf_joy_y (tally->joy.form, row->axis_tilt_deg) / x, k };
     }
   qsort (places, n, sizeof *places, compare_places);
   tally->n_ratio = n;
@@ -201,7 +190,7 @@ order_ratios (TfTally *tally)
       tally->place[places[at].row] = at;
       tally->ratio[at] = places[at].key;
       tally->weight[at]
-          = form_x (tally->joy.form, fabs (tf_sample_get (tally->sample, places[at].row)->lat_deg));
+          = tf_joy_x (tally->joy.form, fabs (tf_sample_get (tally->sample, places[at].row)->lat_deg));
     }
 }
 

@@ -8,6 +8,7 @@
 #include "tf-joy-slope.h"
 #include "tf-study-choice-private.h"
 #include "tf-study-private.h"
+#include "tf-study-quick.h"
 
 /* What the results would be under another choice: each alone, all else as chosen. */
 
@@ -31,6 +32,7 @@ typedef struct
   const TfStudy *study;
   const TfStudyRows *rows;
   const TfFindings *findings;
+  const TfStudyQuick *quick; /* NULL: none is offered */
   TfLedger *ledger; /* of the calling thread alone */
   GArray *out;      /* TfWhatIf; name NULL: not to be shown */
 } Context;
@@ -82,11 +84,14 @@ keep (const TfVariant *v, const TfSample *sample)
 
 static void
 fill_from (TfWhatIf *row, const TfVariant *v, TfChoiceFrom from, const TfStudyRows *rows,
-           const TfFindings *findings)
+           const Context *context)
 {
+  const TfFindings *findings = context->findings;
+  const TfStudyQuick *quick = context->quick;
   if (from == TF_FROM_FIT)
     {
-      fill_row (row, v, findings->sample, findings->verdicts);
+      if (quick == NULL || !tf_study_quick_fill (quick, &v->study, findings->sample, 0.0, row))
+        fill_row (row, v, findings->sample, findings->verdicts);
       return;
     }
   g_autoptr (TfSample) marks = from >= TF_FROM_MARKS ? tf_study_marks (&v->study, rows, NULL) : NULL;
@@ -96,6 +101,8 @@ fill_from (TfWhatIf *row, const TfVariant *v, TfChoiceFrom from, const TfStudyRo
       = from >= TF_FROM_PICKS ? tf_study_picks (&v->study, rows, every, NULL) : NULL;
   g_autoptr (TfSample) part = v->bracketed ? keep (v, picks) : NULL;
   const TfSample *sample = part != NULL ? part : picks != NULL ? picks : findings->sample;
+  if (quick != NULL && tf_study_quick_fill (quick, &v->study, sample, v->later_s, row))
+    return;
   g_autofree TfVerdict *verdicts = tf_study_judge (&v->study, sample, v->later_s);
   if (v->study.sampling.rule != TF_SAMPLING_EVERY)
     tf_study_hold (findings, sample, verdicts);
@@ -131,7 +138,7 @@ fill_from_counts (TfWhatIf *row, const TfVariant *v, const Context *context)
       row->n_missing = taken->n_lacking[lower ? 0 : 1];
     }
   else if (v->floor_factor <= 0.0 && taken->n_even == 0)
-    fill_from (row, v, TF_FROM_MARKS, context->rows, context->findings);
+    fill_from (row, v, TF_FROM_MARKS, context->rows, context);
   else
     return FALSE;
   return TRUE;
@@ -153,7 +160,7 @@ fill_from_ledger (TfWhatIf *row, const TfVariant *v, const Context *context)
   else if (v->with_hints && tf_sample_get_n (rows.all) == tf_sample_get_n (context->rows->all))
     row->missing = "no-hints";
   else
-    fill_from (row, v, TF_FROM_MARKS, &rows, context->findings);
+    fill_from (row, v, TF_FROM_MARKS, &rows, context);
 }
 
 /* The same rows with the scales on, or off. Of one instrument there is nothing to say. */
@@ -170,7 +177,7 @@ fill_scaled (TfWhatIf *row, const TfVariant *v, const Context *context)
     {
       TfStudyRows rows = *own;
       rows.all = all;
-      fill_from (row, v, TF_FROM_MARKS, &rows, context->findings);
+      fill_from (row, v, TF_FROM_MARKS, &rows, context);
     }
   else if (tf_study_unscaled (context->findings, context->study, own))
     row->missing = "no-scale";
@@ -215,7 +222,7 @@ add_choice (const TfChoice *choice, const Context *context, TfWhatIf *row)
   else if (choice->from == TF_FROM_ROWS)
     fill_from_ledger (row, &v, context);
   else
-    fill_from (row, &v, choice->from, context->rows, context->findings);
+    fill_from (row, &v, choice->from, context->rows, context);
 }
 
 /* Each choice fills its own place: any number of threads gives the same. */
@@ -256,9 +263,10 @@ tf_study_what_if (const TfStudy *study, const TfStudyRows *rows, TfFindings *fin
   guint n = tf_choices_get_n ();
   g_autoptr (GArray) all = g_array_sized_new (FALSE, TRUE, sizeof (TfWhatIf), n);
   g_array_set_size (all, n);
-  Context context = { study, rows, findings, ledger, all };
   gboolean many = tf_sample_get_n (findings->every) > 20000;
   g_autoptr (TfWorkers) workers = many ? tf_workers_new (0) : NULL;
+  g_autoptr (TfStudyQuick) quick = tf_study_quick_new (study, findings, rows->all, workers);
+  Context context = { study, rows, findings, quick, ledger, all };
   const TfWork work = { .workers = workers };
   tf_bands_run (&work, n * TF_BAND_ROWS, run_choice, &context);
   for (guint k = 0; k < n; k++)
