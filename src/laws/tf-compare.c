@@ -36,7 +36,8 @@ static void
 count_regions (const Work *work, const TfGroup *group, guint *regions, guint *breaks)
 {
   g_autoptr (TfDistinct) numbers = tf_distinct_new (tf_sample_get_n (work->sample));
-  g_autoptr (GArray) votes = g_array_new (FALSE, TRUE, sizeof (Votes));
+  g_autofree Votes *votes = g_new0 (Votes, tf_sample_get_n (work->sample) + 1);
+  guint n = 0;
   for (guint k = 0; k < tf_sample_get_n (work->sample); k++)
     {
       const TfSampleRow *row = tf_sample_get (work->sample, k);
@@ -45,20 +46,14 @@ count_regions (const Work *work, const TfGroup *group, guint *regions, guint *br
         continue;
       int vote = verdict->kind == TF_VERDICT_BREAKS ? 1 : -1;
       guint number = tf_distinct_add (numbers, row->region);
-      if (number == votes->len)
-        {
-          g_array_set_size (votes, number + 1);
-          g_array_index (votes, Votes, number).first = vote;
-        }
-      g_array_index (votes, Votes, number).balance += vote;
+      if (number == n)
+        votes[n++].first = vote;
+      votes[number].balance += vote;
     }
-  *regions = votes->len;
+  *regions = n;
   *breaks = 0;
-  for (guint k = 0; k < votes->len; k++)
-    {
-      const Votes *v = &g_array_index (votes, Votes, k);
-      *breaks += v->balance > 0 || (v->balance == 0 && v->first > 0);
-    }
+  for (guint k = 0; k < n; k++)
+    *breaks += votes[k].balance > 0 || (votes[k].balance == 0 && votes[k].first > 0);
 }
 
 /* -- slopes ------------------------------------------------------------------------------------- */

@@ -31,7 +31,7 @@ typedef struct
 static void
 take_cycle (Part *part, int cycle)
 {
-  g_autoptr (TfDistinct) numbers = tf_distinct_new (0);
+  g_autoptr (TfDistinct) numbers = tf_distinct_new (tf_sample_get_n (part->sample));
   part->n = 0;
   for (guint k = 0; k < tf_sample_get_n (part->sample); k++)
     {

@@ -68,24 +68,44 @@ const TfHalePublished tf_hale_published[] = {
   { NULL, NULL, 0, 0, 0.0, 0.0 },
 };
 
+enum
+{
+  NO_BIN = 255
+};
+
+/* (transfer full): of each row the bin of its quantity. */
+static guint8 *
+find_bins (const TfSample *sample, const TfHaleQuantity *quantity, guint *lacking)
+{
+  guint n = tf_sample_get_n (sample);
+  guint8 *bins = g_new (guint8, n + 1);
+  *lacking = 0;
+  for (guint k = 0; k < n; k++)
+    {
+      double value = quantity->get (tf_sample_get (sample, k));
+      bins[k] = NO_BIN;
+      *lacking += isnan (value);
+      for (guint e = 0; bins[k] == NO_BIN && e + 1 < quantity->n_edges; e++)
+        if (value >= quantity->edges[e] && value < quantity->edges[e + 1])
+          bins[k] = (guint8)e;
+    }
+  return bins;
+}
+
 GArray *
 tf_hale_bins (const TfSample *sample, const TfVerdict *verdicts, const TfHaleQuantity *quantity,
               const TfHaleParams *params, guint *lacking)
 {
   GArray *bins = g_array_new (FALSE, FALSE, sizeof (TfHaleBin));
   g_autofree double *chances = tf_hale_chances (sample, verdicts);
+  guint without = 0;
+  g_autofree guint8 *in = find_bins (sample, quantity, lacking != NULL ? lacking : &without);
   for (guint e = 0; e + 1 < quantity->n_edges; e++)
     {
       TfHaleBin bin = { .from = quantity->edges[e], .to = quantity->edges[e + 1] };
-      const TfHalePart part = { sample, verdicts, chances, tf_group_of (0, 0), quantity->get, bin.from,
-                                bin.to };
+      const TfHalePart part = { sample, verdicts, chances, tf_group_of (0, 0), in, (guint8)e };
       bin.row = tf_hale_row_of (&part, params);
       g_array_append_val (bins, bin);
     }
-  if (lacking == NULL)
-    return bins;
-  *lacking = 0;
-  for (guint k = 0; k < tf_sample_get_n (sample); k++)
-    *lacking += isnan (quantity->get (tf_sample_get (sample, k)));
   return bins;
 }

@@ -15,8 +15,8 @@ typedef struct
   const TfVerdict *verdicts;
   const double *chances; /* tf_hale_chances() of them */
   TfGroup group;
-  double (*quantity) (const TfSampleRow *row); /* NULL: whatever it is; else from @from to before @to */
-  double from, to;
+  const guint8 *bins; /* NULL: whatever bin a row is in; else those in @bin */
+  guint8 bin;
 } TfHalePart;
 
 /** tf_hale_chances: (transfer full): tf_hale_expected_false() of each row with a verdict. */

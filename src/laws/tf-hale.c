@@ -55,17 +55,6 @@ typedef struct
   guint n;
 } Judged;
 
-static gboolean
-holds (const TfHalePart *part, const TfSampleRow *row, const TfVerdict *verdict)
-{
-  if (!tf_group_holds (&part->group, row, verdict, FALSE))
-    return FALSE;
-  if (part->quantity == NULL)
-    return TRUE;
-  double value = part->quantity (row);
-  return value >= part->from && value < part->to;
-}
-
 /* Counts the part's rows, and gathers those that were judged. */
 static void
 gather (const TfHalePart *part, TfHaleRow *row, Judged *judged)
@@ -74,9 +63,11 @@ gather (const TfHalePart *part, TfHaleRow *row, Judged *judged)
   guint known = 0;
   for (guint k = 0; k < tf_sample_get_n (part->sample); k++)
     {
+      if (part->bins != NULL && part->bins[k] != part->bin)
+        continue;
       const TfSampleRow *pick = tf_sample_get (part->sample, k);
       const TfVerdict *verdict = &part->verdicts[k];
-      if (!holds (part, pick, verdict))
+      if (!tf_group_holds (&part->group, pick, verdict, FALSE))
         continue;
       if (verdict->kind == TF_VERDICT_CANNOT_SAY)
         {

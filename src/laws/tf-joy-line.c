@@ -58,14 +58,26 @@ tf_joy_points_order (TfJoyPoints *points, gboolean by_ratio)
   points->n_ratio = m;
 }
 
-static double
-scatter_of_bin (const TfJoyPoints *points, int bin)
+/* The values of y bin by bin, in the order of the points: those of bin b from start[b] to before start[b + 1]. */
+static double *
+part_by_bin (const TfJoyPoints *points, guint start[TF_JOY_BINS + 1])
 {
-  g_autofree double *values = g_new (double, points->n);
-  guint m = 0;
+  guint at[TF_JOY_BINS + 1] = { 0 };
+  double *values = g_new (double, points->n + 1);
   for (guint k = 0; k < points->n; k++)
-    if (points->bin[k] == bin)
-      values[m++] = points->y[k];
+    at[points->bin[k] + 1]++;
+  for (int b = 0; b < TF_JOY_BINS; b++)
+    at[b + 1] += at[b];
+  memcpy (start, at, sizeof at);
+  for (guint k = 0; k < points->n; k++)
+    values[at[points->bin[k]]++] = points->y[k];
+  return values;
+}
+
+/* @values are overwritten. */
+static double
+scatter_of (double *values, guint m)
+{
   double centre = tf_median (values, m);
   for (guint k = 0; k < m; k++)
     values[k] = fabs (values[k] - centre);
@@ -79,9 +91,11 @@ measure_scatter (TfJoyPoints *points)
   double greatest = 0.0;
   if (points->bin_scatter[0] > 0.0)
     return;
+  guint start[TF_JOY_BINS + 1];
+  g_autofree double *values = part_by_bin (points, start);
   for (int b = 0; b < TF_JOY_BINS; b++)
     {
-      points->bin_scatter[b] = scatter_of_bin (points, b);
+      points->bin_scatter[b] = scatter_of (values + start[b], start[b + 1] - start[b]);
       greatest = fmax (greatest, points->bin_scatter[b]);
     }
   double least = greatest > 0.0 ? 0.01 * greatest : 1.0;
@@ -301,10 +315,40 @@ tf_joy_line_robust (TfJoyPoints *points)
   return (TfJoyLine){ median.value, NAN };
 }
 
+/* The middle value of each bin, or midway between the two: what the running medians give while every point
+ * counts once. */
+static void
+find_middles (const TfJoyPoints *points, TfJoyRunning medians[TF_JOY_BINS])
+{
+  guint start[TF_JOY_BINS + 1];
+  g_autofree double *values = part_by_bin (points, start);
+  for (int b = 0; b < TF_JOY_BINS; b++)
+    {
+      guint m = start[b + 1] - start[b];
+      double *some = values + start[b];
+      if (m == 0)
+        continue;
+      double upper = tf_select (some, m, m / 2), lower = upper;
+      for (guint k = 0; m % 2 == 0 && k < m / 2; k++)
+        lower = k == 0 ? some[0] : fmax (lower, some[k]);
+      medians[b].value = m % 2 == 1 ? upper : 0.5 * (lower + upper);
+    }
+}
+
+static void
+run_medians (TfJoyPoints *points, TfJoyRunning medians[TF_JOY_BINS])
+{
+  tf_joy_points_order (points, FALSE);
+  for (guint j = 0; j < points->n; j++)
+    {
+      guint k = points->by_y[j];
+      tf_joy_running_add (&medians[points->bin[k]], points->y[k], points->count[k]);
+    }
+}
+
 static TfJoyLine
 bin_medians (TfJoyPoints *points, gboolean free_line)
 {
-  tf_joy_points_order (points, FALSE);
   measure_scatter (points);
   double total[TF_JOY_BINS] = { 0 }, sum_x[TF_JOY_BINS] = { 0 };
   for (guint k = 0; k < points->n; k++)
@@ -315,11 +359,10 @@ bin_medians (TfJoyPoints *points, gboolean free_line)
   TfJoyRunning medians[TF_JOY_BINS];
   for (int b = 0; b < TF_JOY_BINS; b++)
     medians[b] = (TfJoyRunning){ .half = 0.5 * total[b], .value = NAN };
-  for (guint j = 0; j < points->n; j++)
-    {
-      guint k = points->by_y[j];
-      tf_joy_running_add (&medians[points->bin[k]], points->y[k], points->count[k]);
-    }
+  if (points->drawn)
+    run_medians (points, medians);
+  else
+    find_middles (points, medians);
   Sums sums = { 0 };
   for (int b = 0; b < TF_JOY_BINS; b++)
     if (total[b] >= MIN_IN_BIN)

@@ -156,9 +156,9 @@ compare_numbers (gconstpointer a, gconstpointer b)
   return (left > right) - (left < right);
 }
 
-/* Puts the value that is at @wanted in order there, smaller ones before it (Hoare 1961). */
-static double
-select_value (double *values, guint n, guint wanted)
+/* Hoare 1961. */
+double
+tf_select (double *values, guint n, guint wanted)
 {
   gssize low = 0, high = (gssize)n - 1;
   while (low < high)
@@ -196,7 +196,7 @@ tf_median (const double *values, guint n)
   for (guint k = 0; k < n; k++)
     if (isnan (some[k]))
       return NAN;
-  double upper = select_value (some, n, n / 2);
+  double upper = tf_select (some, n, n / 2);
   if (n % 2 == 1)
     return upper;
   double lower = some[0]; /* the greatest before it */

@@ -37,6 +37,8 @@ guint tf_holm (const double *p, guint n, double *adjusted);
 double tf_quantile (const double *sorted, guint n, double p);
 /** tf_median: of values in any order (copied); NaN for none, and when one is NaN. */
 double tf_median (const double *values, guint n);
+/** tf_select: the value that is at @wanted in order; it is put there, smaller ones before it. None is NaN. */
+double tf_select (double *values, guint n, guint wanted);
 /** tf_weighted_median: smallest value at which half of the weight is reached, midway to the next on
  * a tie; rows that are not finite or have no weight are left out; NaN when none is left. */
 double tf_weighted_median (const double *values, const double *weights, guint n);

@@ -4,11 +4,11 @@
 #include "tf-tally.h"
 
 #include <math.h>
-#include <stdlib.h>
 
 #include "tf-constants.h"
 #include "tf-joy-line-private.h"
 #include "tf-joy-slope.h"
+#include "tf-sort.h"
 
 enum
 {
@@ -52,20 +52,6 @@ struct _TfTally
   guint8 *member; /* of the line now */
   double *block;  /* sums of the members' weights */
 };
-
-typedef struct
-{
-  double key;
-  guint row;
-} Place;
-
-static int
-compare_places (gconstpointer a, gconstpointer b)
-{
-  const Place *p = a, *q = b;
-  int by_key = (p->key > q->key) - (p->key < q->key);
-  return by_key != 0 ? by_key : (p->row > q->row) - (p->row < q->row);
-}
 
 gboolean
 tf_tally_offers (const TfJoyParams *joy)
@@ -147,20 +133,20 @@ judge_all (TfTally *tally, const TfVerdict *verdicts, const TfDivides *divides)
 static void
 order_times (TfTally *tally)
 {
-  g_autofree Place *places = g_new (Place, tally->n + 1);
-  guint n = 0, sorted = 1;
+  g_autofree double *times = g_new (double, tally->n + 1);
+  g_autofree guint *rows = g_new (guint, tally->n + 1);
+  guint n = 0;
   for (guint k = 0; k < tally->n; k++)
     if (tf_time_is_known (tf_sample_get (tally->sample, k)->time))
       {
-        places[n++] = (Place){ tf_sample_get (tally->sample, k)->time.s, k };
-        sorted = sorted && (n < 2 || places[n - 1].key >= places[n - 2].key);
+        times[n] = tf_sample_get (tally->sample, k)->time.s;
+        rows[n++] = k;
       }
-  if (!sorted)
-    qsort (places, n, sizeof *places, compare_places);
+  g_autofree guint *order = tf_sort_order (times, n);
   for (guint k = 0; k < n; k++)
     {
-      tally->by_time[k] = places[k].row;
-      tally->times[k] = places[k].key;
+      tally->by_time[k] = rows[order[k]];
+      tally->times[k] = times[order[k]];
     }
   for (guint k = n; k < tally->n; k++)
     tally->times[k] = INFINITY;
@@ -169,17 +155,21 @@ order_times (TfTally *tally)
 static void
 order_ratios (TfTally *tally)
 {
-  g_autofree Place *places = g_new (Place, tally->n + 1);
+  g_autofree double *ratios = g_new (double, tally->n + 1), *weights = g_new (double, tally->n + 1);
+  g_autofree guint *rows = g_new (guint, tally->n + 1);
   guint n = 0;
   for (guint k = 0; k < tally->n; k++)
     {
       const TfSampleRow *row = tf_sample_get (tally->sample, k);
       double x = tf_joy_x (tally->joy.form, fabs (row->lat_deg));
       tally->place[k] = G_MAXUINT;
-      if (tally->rows[k].in_line && x > 0)
-        places[n++] = (Place){ tf_joy_y (tally->joy.form, row->axis_tilt_deg) / x, k };
+      if (!tally->rows[k].in_line || !(x > 0))
+        continue;
+      ratios[n] = tf_joy_y (tally->joy.form, row->axis_tilt_deg) / x;
+      weights[n] = x;
+      rows[n++] = k;
     }
-  qsort (places, n, sizeof *places, compare_places);
+  g_autofree guint *order = tf_sort_order (ratios, n);
   tally->n_ratio = n;
   tally->ratio = g_new (double, n + 1);
   tally->weight = g_new (double, n + 1);
@@ -187,10 +177,9 @@ order_ratios (TfTally *tally)
   tally->block = g_new0 (double, n / BLOCK + 1);
   for (guint at = 0; at < n; at++)
     {
-      tally->place[places[at].row] = at;
-      tally->ratio[at] = places[at].key;
-      tally->weight[at]
-          = tf_joy_x (tally->joy.form, fabs (tf_sample_get (tally->sample, places[at].row)->lat_deg));
+      tally->place[rows[order[at]]] = at;
+      tally->ratio[at] = ratios[order[at]];
+      tally->weight[at] = weights[order[at]];
     }
 }
 

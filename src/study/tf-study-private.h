@@ -3,6 +3,7 @@
  */
 #pragma once
 
+#include "tf-bands.h"
 #include "tf-ledger-scales.h"
 #include "tf-study-again.h"
 #include "tf-study.h"
@@ -89,6 +90,9 @@ void tf_study_outside_row (const TfRow *row, TfSampleRow *out);
 /** tf_study_judge: (transfer full): a verdict for each row, as if every minimum had come @later_s
  * seconds later. */
 TfVerdict *tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s);
+/** tf_study_judge_with: likewise; @workers: (nullable). */
+TfVerdict *tf_study_judge_with (const TfStudy *study, const TfSample *sample, double later_s,
+                                TfWorkers *workers);
 /** tf_study_hold: cannot say where the passage changes. That is told once, under the study as
  * chosen: another cycle turns all marks of a passage alike. */
 void tf_study_hold (const TfFindings *findings, const TfSample *sample, TfVerdict *verdicts);
@@ -110,6 +114,7 @@ TfFindings *tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, Tf
                                double floor, gboolean what_if);
 /** tf_study_count: one more of @key. */
 void tf_study_count (GHashTable *counts, const char *key);
+void tf_study_count_more (GHashTable *counts, const char *key, guint more);
 
 /* Members of the `laws` document. */
 void tf_study_build_interval (JsonBuilder *builder, const char *key, TfInterval interval);
@@ -120,8 +125,8 @@ void tf_study_build_parts (JsonBuilder *builder, const TfFindings *findings);
 double tf_study_floor_of_noises (const GArray *noises);
 /** tf_study_what_if: (element-type TfWhatIf): the share and the slope under other choices, each
  * alone, and into findings->cycle_choice the three ways of telling a cycle. @ledger: (nullable): for
- * what needs other measures or the hints. */
+ * what needs other measures or the hints. @workers: (nullable). */
 GArray *tf_study_what_if (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings,
-                          TfLedger *ledger);
+                          TfLedger *ledger, TfWorkers *workers);
 
 G_END_DECLS

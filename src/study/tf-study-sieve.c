@@ -71,10 +71,16 @@ find_row_reason (const TfSieveParams *p, const TfStudyFact *fact)
 }
 
 void
-tf_study_count (GHashTable *counts, const char *key)
+tf_study_count_more (GHashTable *counts, const char *key, guint more)
 {
   guint n = GPOINTER_TO_UINT (g_hash_table_lookup (counts, key));
-  g_hash_table_insert (counts, (gpointer)key, GUINT_TO_POINTER (n + 1));
+  g_hash_table_insert (counts, (gpointer)key, GUINT_TO_POINTER (n + more));
+}
+
+void
+tf_study_count (GHashTable *counts, const char *key)
+{
+  tf_study_count_more (counts, key, 1);
 }
 
 /* Counts a row that is left out, or the conditions that it passed for want of the quantity. Hints

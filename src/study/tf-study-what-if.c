@@ -258,13 +258,11 @@ note_cycle_choice (TfFindings *findings, const GArray *rows)
 
 GArray *
 tf_study_what_if (const TfStudy *study, const TfStudyRows *rows, TfFindings *findings,
-                  TfLedger *ledger)
+                  TfLedger *ledger, TfWorkers *workers)
 {
   guint n = tf_choices_get_n ();
   g_autoptr (GArray) all = g_array_sized_new (FALSE, TRUE, sizeof (TfWhatIf), n);
   g_array_set_size (all, n);
-  gboolean many = tf_sample_get_n (findings->every) > 20000;
-  g_autoptr (TfWorkers) workers = many ? tf_workers_new (0) : NULL;
   g_autoptr (TfStudyQuick) quick = tf_study_quick_new (study, findings, rows->all, workers);
   Context context = { study, rows, findings, quick, ledger, all };
   const TfWork work = { .workers = workers };

@@ -106,25 +106,48 @@ tf_findings_free (TfFindings *findings)
 
 /* -- the laws ------------------------------------------------------------------------------ */
 
+typedef struct
+{
+  const TfSample *sample;
+  const TfDivides *divides;
+  const TfVerdictParams *params;
+  double later_s;
+  TfVerdict *verdicts;
+} Judging;
+
+static void
+judge_rows (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  const Judging *judging = data;
+  for (guint k = first; k < first + n; k++)
+    {
+      const TfSampleRow *row = tf_sample_get (judging->sample, k);
+      TfSampleRow earlier;
+      if (fabs (judging->later_s) > 0.0)
+        {
+          earlier = *row;
+          earlier.time = tf_time_add (row->time, -judging->later_s);
+          row = &earlier;
+        }
+      judging->verdicts[k] = tf_verdict_judge (row, judging->divides, judging->params);
+    }
+}
+
 TfVerdict *
-tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s)
+tf_study_judge_with (const TfStudy *study, const TfSample *sample, double later_s, TfWorkers *workers)
 {
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   guint n = tf_sample_get_n (sample);
-  TfVerdict *verdicts = g_new0 (TfVerdict, n + 1);
-  for (guint k = 0; k < n; k++)
-    {
-      const TfSampleRow *row = tf_sample_get (sample, k);
-      if (fabs (later_s) > 0.0)
-        {
-          TfSampleRow earlier = *row;
-          earlier.time = tf_time_add (row->time, -later_s);
-          verdicts[k] = tf_verdict_judge (&earlier, divides, &study->verdict);
-        }
-      else
-        verdicts[k] = tf_verdict_judge (row, divides, &study->verdict);
-    }
-  return verdicts;
+  Judging judging = { sample, divides, &study->verdict, later_s, g_new (TfVerdict, n + 1) };
+  const TfWork work = { .workers = workers };
+  tf_bands_run (&work, n, judge_rows, &judging);
+  return judging.verdicts;
+}
+
+TfVerdict *
+tf_study_judge (const TfStudy *study, const TfSample *sample, double later_s)
+{
+  return tf_study_judge_with (study, sample, later_s, NULL);
 }
 
 /* Joy fits beside the Hale rows: every cycle and hemisphere that is there, then all. */
@@ -215,13 +238,32 @@ tf_study_hold (const TfFindings *findings, const TfSample *sample, TfVerdict *ve
       }
 }
 
+/* As tf_held() where every mark is its own passage: it holds to itself. */
+static TfHeld *
+hold_alone (const TfFindings *findings)
+{
+  guint n = tf_sample_get_n (findings->sample);
+  TfHeld *held = g_new0 (TfHeld, n + 1);
+  for (guint k = 0; k < n; k++)
+    if (findings->verdicts[k].kind != TF_VERDICT_CANNOT_SAY
+        && !(tf_sample_get (findings->sample, k)->mu < TF_HELD_MU))
+      held[k].held = held[k].of = 1;
+  return held;
+}
+
 /* Under "every mark" each speaks for itself. */
 static void
-hold (TfFindings *findings, const TfStudy *study)
+hold (TfFindings *findings, const TfStudy *study, TfWorkers *workers)
 {
   if (study->sampling.rule == TF_SAMPLING_EVERY)
     return;
-  g_autofree TfVerdict *every = tf_study_judge (study, findings->every, 0.0);
+  if (study->sampling.rule != TF_SAMPLING_MEAN
+      && findings->sampling.passages == tf_sample_get_n (findings->every))
+    {
+      findings->held = hold_alone (findings);
+      return;
+    }
+  g_autofree TfVerdict *every = tf_study_judge_with (study, findings->every, 0.0, workers);
   findings->held = tf_held (findings->every, every, findings->sample, findings->verdicts);
   for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
     if (g_strcmp0 (findings->verdicts[k].reason, "hale-changes") == 0)
@@ -230,13 +272,19 @@ hold (TfFindings *findings, const TfStudy *study)
 }
 
 static void
-judge (TfFindings *findings, const TfStudy *study)
+judge (TfFindings *findings, const TfStudy *study, TfWorkers *workers)
 {
-  findings->verdicts = tf_study_judge (study, findings->sample, 0.0);
-  hold (findings, study);
-  for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
-    if (findings->verdicts[k].reason != NULL)
-      tf_study_count (findings->cannot_say, findings->verdicts[k].reason);
+  guint same = 0, n = tf_sample_get_n (findings->sample);
+  findings->verdicts = tf_study_judge_with (study, findings->sample, 0.0, workers);
+  hold (findings, study, workers);
+  for (guint k = 0; k < n; k += same)
+    { /* rows as they come in time often have the same reason */
+      const char *reason = findings->verdicts[k].reason;
+      for (same = 1; k + same < n && findings->verdicts[k + same].reason == reason;)
+        same++;
+      if (reason != NULL)
+        tf_study_count_more (findings->cannot_say, reason, same);
+    }
 }
 
 static void
@@ -287,27 +335,74 @@ keep_every (TfFindings *findings, const TfStudyRows *rows)
   tf_sample_free (sample);
 }
 
+static void
+compare (TfFindings *findings, const TfStudy *study)
+{
+  findings->comparisons = tf_compare (findings->sample, findings->verdicts, &study->joy);
+}
+
+static void
+fit (TfFindings *findings, const TfStudy *study)
+{
+  findings->joy = fit_joy (findings, study);
+  bin_tilts (findings, study);
+}
+
+static void
+follow_drifts (TfFindings *findings, const TfStudy *study)
+{
+  findings->drifts = tf_drifts (findings->sample, findings->verdicts, &study->drift);
+}
+
+static void
+sum_dipoles (TfFindings *findings, const TfStudy *study)
+{
+  findings->dipoles = tf_dipole_sums (findings->sample, findings->verdicts);
+}
+
+static void
+follow_ages (TfFindings *findings, const TfStudy *study)
+{
+  findings->emergence = tf_emergence_new (findings->every, &study->emergence);
+  average_tilts (findings);
+}
+
+/* What hangs on the sample, its verdicts and the table of shares alone: each fills its own members, so any number of
+ * threads gives the same. The longest first. */
+static void (*const laws[]) (TfFindings *findings, const TfStudy *study)
+    = { compare, fit, bin_shares, sum_dipoles, follow_drifts, follow_ages };
+
+typedef struct
+{
+  TfFindings *findings;
+  const TfStudy *study;
+} Law;
+
+static void
+run_law (guint band, guint first, guint n, guint worker, gpointer data)
+{
+  const Law *law = data;
+  laws[band](law->findings, law->study);
+}
+
 TfFindings *
 tf_study_run_rows (const TfStudy *study, const TfStudyRows *rows, TfLedger *ledger, double floor,
                    gboolean what_if)
 {
+  gboolean many = tf_sample_get_n (rows->all) > 20000;
+  g_autoptr (TfWorkers) workers = many ? tf_workers_new (0) : NULL;
+  const TfWork work = { .workers = workers };
   TfFindings *findings = findings_new (floor);
+  Law law = { findings, study };
   findings->every = tf_study_marks (study, rows, findings);
   findings->sample = tf_study_picks (study, rows, findings->every, findings);
   findings->regions = tf_sample_count_regions (findings->sample);
   count_marks (findings, rows);
-  judge (findings, study);
+  judge (findings, study, workers);
   findings->hale = tf_hale_table (findings->sample, findings->verdicts, &study->hale);
-  findings->joy = fit_joy (findings, study);
-  findings->what_if = what_if ? tf_study_what_if (study, rows, findings, ledger)
+  tf_bands_run (&work, G_N_ELEMENTS (laws) * TF_BAND_ROWS, run_law, &law);
+  findings->what_if = what_if ? tf_study_what_if (study, rows, findings, ledger, workers)
                               : g_array_new (FALSE, FALSE, sizeof (TfWhatIf));
-  findings->comparisons = tf_compare (findings->sample, findings->verdicts, &study->joy);
-  bin_shares (findings, study);
-  bin_tilts (findings, study);
-  findings->drifts = tf_drifts (findings->sample, findings->verdicts, &study->drift);
-  findings->dipoles = tf_dipole_sums (findings->sample, findings->verdicts);
-  findings->emergence = tf_emergence_new (findings->every, &study->emergence);
-  average_tilts (findings);
   keep_every (findings, rows);
   tf_study_add_cautions (findings, study, rows);
   return findings;
