@@ -6,6 +6,7 @@
 #include <math.h>
 #include <gsl/gsl_cdf.h>
 
+#include "tf-many.h"
 #include "tf-sort.h"
 
 /* The greatest r with 2 P (B < r) <= 1 - level; 0 when there is none. Sought from where the normal
@@ -56,8 +57,8 @@ tf_bins (const double *x, const double *y, guint n, double from, double to, doub
   guint n_bins = (guint)ceil ((to - from) / step - 1e-9);
   GArray *bins = g_array_sized_new (FALSE, TRUE, sizeof (TfBin), n_bins);
   g_autofree guint *start = g_new0 (guint, n_bins + 2);
-  g_autofree guint *of = g_new (guint, n + 1);
-  g_autofree double *values = g_new (double, n + 1);
+  g_autofree guint *of = tf_new_many (guint, n + 1);
+  g_autofree double *values = tf_new_many (double, n + 1);
   g_array_set_size (bins, n_bins);
   TfBin *bin = (TfBin *)(gpointer)bins->data;
   for (guint k = 0; k < n; k++)

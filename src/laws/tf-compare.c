@@ -7,6 +7,7 @@
 
 #include "tf-distinct.h"
 #include "tf-joy-slope.h"
+#include "tf-many.h"
 #include "tf-sort.h"
 
 enum
@@ -36,7 +37,7 @@ static void
 count_regions (const Work *work, const TfGroup *group, guint *regions, guint *breaks)
 {
   g_autoptr (TfDistinct) numbers = tf_distinct_new (tf_sample_get_n (work->sample));
-  g_autofree Votes *votes = g_new0 (Votes, tf_sample_get_n (work->sample) + 1);
+  g_autofree Votes *votes = tf_new0_many (Votes, tf_sample_get_n (work->sample) + 1);
   guint n = 0;
   for (guint k = 0; k < tf_sample_get_n (work->sample); k++)
     {
@@ -172,7 +173,7 @@ static double
 median_flux (const Work *work)
 {
   guint n = 0;
-  g_autofree double *fluxes = g_new (double, tf_sample_get_n (work->sample) + 1);
+  g_autofree double *fluxes = tf_new_many (double, tf_sample_get_n (work->sample) + 1);
   for (guint k = 0; k < tf_sample_get_n (work->sample); k++)
     {
       double flux = tf_sample_get (work->sample, k)->flux_mx;

@@ -7,6 +7,7 @@
 #include <string.h>
 
 #include "tf-distinct.h"
+#include "tf-many.h"
 
 /* Sums over rows. Marks of one region share their errors: the error of its mean is that of one. */
 typedef struct
@@ -111,8 +112,8 @@ tf_dipole_sums (const TfSample *sample, const TfVerdict *verdicts)
   static const int kinds[] = { TF_VERDICT_KEEPS, TF_VERDICT_BREAKS, TF_VERDICT_CANNOT_SAY, -1 };
   GArray *sums = g_array_new (FALSE, FALSE, sizeof (TfDipoleSum));
   guint n = tf_sample_get_n (sample);
-  g_autofree guint *rows = g_new (guint, n + 1), *regions = g_new (guint, n + 1);
-  g_autofree Sum *room = g_new (Sum, n + 1);
+  g_autofree guint *rows = tf_new_many (guint, n + 1), *regions = tf_new_many (guint, n + 1);
+  g_autofree Sum *room = tf_new_many (Sum, n + 1);
   Part part = { sample, verdicts, 0, 0, rows, regions, room };
   int last = 0;
   for (guint k = 0; k < n; k++)

@@ -3,6 +3,8 @@
  */
 #include "tf-distinct.h"
 
+#include "tf-many.h"
+
 /* Ids are as a rule numbers from 1 up without many gaps: those stand in a table of their own, by
  * themselves. The others by open addressing; a place holds its id and number plus one, 0 is free. */
 typedef struct
@@ -47,7 +49,7 @@ tf_distinct_new (guint expected)
 {
   TfDistinct *distinct = g_new0 (TfDistinct, 1);
   distinct->limit = 2 * MIN (expected, 1u << 27) + 64;
-  distinct->direct = g_new0 (guint, distinct->limit);
+  distinct->direct = tf_new0_many (guint, distinct->limit);
   return distinct;
 }
 

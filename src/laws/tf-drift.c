@@ -7,6 +7,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
+#include "tf-many.h"
 
 #define O(member) offsetof (TfDriftParams, member)
 const TfOption tf_drift_options[] = {
@@ -56,7 +57,7 @@ static Columns
 gather (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group)
 {
   guint all = tf_sample_get_n (sample);
-  Columns c = { 0, g_new (double, all + 1), g_new (double, all + 1), g_new (guint32, all + 1) };
+  Columns c = { 0, tf_new_many (double, all + 1), tf_new_many (double, all + 1), tf_new_many (guint32, all + 1) };
   double minimum = tf_cycle_minimum (group->cycle).s;
   for (guint k = 0; k < all; k++)
     {
@@ -84,7 +85,7 @@ list_years (const Columns *c, TfDrift *drift)
   TfDriftYear years[YEARS + 1] = { { 0 } };
   double squares[YEARS + 1] = { 0 };
   guint start[YEARS + 2] = { 0 };
-  g_autofree guint32 *regions = g_new (guint32, c->n + 1);
+  g_autofree guint32 *regions = tf_new_many (guint32, c->n + 1);
   for (guint k = 0; k < c->n; k++)
     start[year_of (c->months[k]) + 1]++;
   for (guint y = 0; y <= YEARS; y++)

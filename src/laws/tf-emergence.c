@@ -7,6 +7,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
+#include "tf-many.h"
 #include "tf-proportion.h"
 #include "tf-sort.h"
 
@@ -61,8 +62,8 @@ static GArray *
 order_rows (const TfSample *every)
 {
   guint n = tf_sample_get_n (every), m = 0;
-  g_autofree double *keys = g_new (double, n + 1);
-  g_autofree guint *rows = g_new (guint, n + 1);
+  g_autofree double *keys = tf_new_many (double, n + 1);
+  g_autofree guint *rows = tf_new_many (guint, n + 1);
   for (guint k = 0; k < n; k++)
     if (tf_sample_get (every, k)->flux_mx > 0.0 && tf_time_is_known (tf_sample_get (every, k)->time))
       {

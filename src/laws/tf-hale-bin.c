@@ -3,6 +3,7 @@
  */
 #include "tf-hale-bin.h"
 #include "tf-hale-private.h"
+#include "tf-many.h"
 
 #include <math.h>
 #include <glib/gi18n-lib.h>
@@ -78,7 +79,7 @@ static guint8 *
 find_bins (const TfSample *sample, const TfHaleQuantity *quantity, guint *lacking)
 {
   guint n = tf_sample_get_n (sample);
-  guint8 *bins = g_new (guint8, n + 1);
+  guint8 *bins = tf_new_many (guint8, n + 1);
   *lacking = 0;
   for (guint k = 0; k < n; k++)
     {

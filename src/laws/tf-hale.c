@@ -8,6 +8,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-constants.h"
+#include "tf-many.h"
 
 #define O(member) offsetof (TfHaleParams, member)
 const TfOption tf_hale_options[] = {
@@ -39,7 +40,7 @@ double *
 tf_hale_chances (const TfSample *sample, const TfVerdict *verdicts)
 {
   guint n = tf_sample_get_n (sample);
-  double *chances = g_new (double, n + 1);
+  double *chances = tf_new_many (double, n + 1);
   for (guint k = 0; k < n; k++)
     chances[k] = verdicts[k].kind == TF_VERDICT_CANNOT_SAY
                      ? NAN
@@ -95,8 +96,8 @@ tf_hale_row_of (const TfHalePart *part, const TfHaleParams *params)
 {
   guint all = tf_sample_get_n (part->sample);
   TfHaleRow row = { .cycle = part->group.cycle, .hemisphere = part->group.hemisphere };
-  g_autofree guint32 *regions = g_new (guint32, all + 1);
-  g_autofree guint8 *breaks = g_new (guint8, all + 1);
+  g_autofree guint32 *regions = tf_new_many (guint32, all + 1);
+  g_autofree guint8 *breaks = tf_new_many (guint8, all + 1);
   Judged judged = { regions, breaks, 0 };
   gather (part, &row, &judged);
   row.n = row.keeps + row.breaks;

@@ -6,6 +6,7 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-many.h"
 #include "tf-proportion.h"
 #include "tf-sort.h"
 
@@ -19,7 +20,7 @@ enum
 static guint *
 order_by (const double *first, const double *second, const guint *rows, guint n)
 {
-  g_autofree double *keys = g_new (double, n + 1);
+  g_autofree double *keys = tf_new_many (double, n + 1);
   for (guint k = 0; k < n; k++)
     keys[k] = second[k];
   g_autofree guint *by_second = tf_sort_order (keys, n);
@@ -45,8 +46,8 @@ tf_joy_points_order (TfJoyPoints *points, gboolean by_ratio)
       return;
     }
   guint n = points->n, m = 0;
-  g_autofree double *ratio = g_new (double, n + 1), *x = g_new (double, n + 1);
-  g_autofree guint *rows = g_new (guint, n + 1);
+  g_autofree double *ratio = tf_new_many (double, n + 1), *x = tf_new_many (double, n + 1);
+  g_autofree guint *rows = tf_new_many (guint, n + 1);
   for (guint k = 0; k < n; k++)
     if (points->x[k] > 0.0)
       {
@@ -63,7 +64,7 @@ static double *
 part_by_bin (const TfJoyPoints *points, guint start[TF_JOY_BINS + 1])
 {
   guint at[TF_JOY_BINS + 1] = { 0 };
-  double *values = g_new (double, points->n + 1);
+  double *values = tf_new_many (double, points->n + 1);
   for (guint k = 0; k < points->n; k++)
     at[points->bin[k] + 1]++;
   for (int b = 0; b < TF_JOY_BINS; b++)
@@ -108,11 +109,11 @@ tf_joy_points_new (guint n, const double *x, const double *y, const double *flux
 {
   TfJoyPoints *points = g_new0 (TfJoyPoints, 1);
   points->n = n;
-  points->x = g_memdup2 (x, n * sizeof *x);
-  points->y = g_memdup2 (y, n * sizeof *y);
-  points->flux = g_memdup2 (flux, n * sizeof *flux);
-  points->count = g_new (double, n);
-  points->bin = g_new (int, n);
+  points->x = tf_dup_many (x, n, sizeof *x);
+  points->y = tf_dup_many (y, n, sizeof *y);
+  points->flux = tf_dup_many (flux, n, sizeof *flux);
+  points->count = tf_new_many (double, n);
+  points->bin = tf_new_many (int, n);
   for (guint k = 0; k < n; k++)
     {
       points->count[k] = 1.0;
@@ -285,7 +286,7 @@ tf_joy_ratio_median (TfJoyRatio *ratios, guint n)
 static double
 median_once (const TfJoyPoints *points)
 {
-  g_autofree TfJoyRatio *ratios = g_new (TfJoyRatio, points->n + 1);
+  g_autofree TfJoyRatio *ratios = tf_new_many (TfJoyRatio, points->n + 1);
   guint n = 0;
   for (guint k = 0; k < points->n; k++)
     if (points->x[k] > 0.0)

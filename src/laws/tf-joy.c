@@ -10,6 +10,7 @@
 #include "tf-constants.h"
 #include "tf-joy-line-private.h"
 #include "tf-joy-slope.h"
+#include "tf-many.h"
 
 const char *const tf_joy_form_names[] = { "linear", "linear-free", "sine", "sine-of-tilt", NULL };
 const char *const tf_joy_estimator_names[]
@@ -159,10 +160,10 @@ gather (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *group,
         const TfJoyParams *params)
 {
   guint all = tf_sample_get_n (sample);
-  Columns c = { .lat = g_new (double, all),
-                .tilt = g_new (double, all),
-                .flux = g_new (double, all),
-                .region = g_new (guint32, all) };
+  Columns c = { .lat = tf_new_many (double, all),
+                .tilt = tf_new_many (double, all),
+                .flux = tf_new_many (double, all),
+                .region = tf_new_many (guint32, all) };
   for (guint k = 0; k < all; k++)
     {
       const TfSampleRow *row = tf_sample_get (sample, k);
@@ -257,7 +258,7 @@ static TfJoyPoints *
 draw_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit)
 {
   const Form *form = &forms[params->form];
-  g_autofree double *x = g_new (double, c->n), *y = g_new (double, c->n);
+  g_autofree double *x = tf_new_many (double, c->n), *y = tf_new_many (double, c->n);
   for (guint k = 0; k < c->n; k++)
     {
       x[k] = form->x (c->lat[k]);
@@ -274,7 +275,7 @@ static void
 fit_line (const Columns *c, const TfJoyParams *params, TfJoyFit *fit, double *draws)
 {
   TfJoyPoints *points = draw_line (c, params, fit);
-  g_autofree double *y = g_new (double, c->n);
+  g_autofree double *y = tf_new_many (double, c->n);
   for (guint k = 0; k < c->n; k++)
     y[k] = c->tilt[k] - tf_joy_tilt (fit, (TfJoyForm)params->form, c->lat[k]);
   fit->scatter_deg = robust_scatter (y, c->n);
@@ -289,7 +290,7 @@ find_slope (const TfSample *sample, const TfVerdict *verdicts, const TfGroup *gr
 {
   const Form *form = &forms[params->form];
   guint n = 0;
-  g_autofree TfJoyRatio *ratios = g_new (TfJoyRatio, tf_sample_get_n (sample) + 1);
+  g_autofree TfJoyRatio *ratios = tf_new_many (TfJoyRatio, tf_sample_get_n (sample) + 1);
   for (guint k = 0; k < tf_sample_get_n (sample); k++)
     {
       const TfSampleRow *row = tf_sample_get (sample, k);

@@ -9,6 +9,7 @@
 #include <gsl/gsl_rng.h>
 
 #include "tf-distinct.h"
+#include "tf-many.h"
 #include "tf-sort.h"
 
 #define NO_INTERVAL ((TfInterval){ NAN, NAN })
@@ -192,7 +193,7 @@ tf_median (const double *values, guint n)
 {
   if (n == 0)
     return NAN;
-  g_autofree double *some = g_memdup2 (values, n * sizeof *values);
+  g_autofree double *some = tf_dup_many (values, n, sizeof *values);
   for (guint k = 0; k < n; k++)
     if (isnan (some[k]))
       return NAN;

@@ -6,6 +6,7 @@
 #include <math.h>
 
 #include "tf-distinct.h"
+#include "tf-many.h"
 
 struct _TfSample
 {
@@ -26,7 +27,7 @@ TfSample *
 tf_sample_new_sized (guint n)
 {
   TfSample *sample = g_new0 (TfSample, 1);
-  sample->rows = g_array_sized_new (FALSE, FALSE, sizeof (TfSampleRow), n);
+  sample->rows = tf_array_of_many (sizeof (TfSampleRow), n);
   return sample;
 }
 
@@ -46,7 +47,7 @@ tf_sample_new_part (const TfSample *whole)
 {
   g_return_val_if_fail (whole != NULL, NULL);
   TfSample *part = g_new0 (TfSample, 1);
-  part->rows = g_array_sized_new (FALSE, FALSE, sizeof (guint), whole->rows->len);
+  part->rows = tf_array_of_many (sizeof (guint), whole->rows->len);
   part->whole = whole->whole != NULL ? whole->whole : whole;
   part->from = whole;
   return part;
@@ -214,7 +215,7 @@ static guint
 count_column (const TfSample *sample, gsize offset)
 {
   guint n = sample->rows->len;
-  g_autofree guint32 *ids = g_new (guint32, n);
+  g_autofree guint32 *ids = tf_new_many (guint32, n);
   for (guint k = 0; k < n; k++)
     ids[k] = *(const guint32 *)((const char *)tf_sample_get (sample, k) + offset);
   return tf_count_distinct (ids, n);

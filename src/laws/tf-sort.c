@@ -6,6 +6,8 @@
 #include <math.h>
 #include <string.h>
 
+#include "tf-many.h"
+
 /* By the bytes of what a double looks like, turned so that it counts upwards (Knuth, vol. 3, sec. 5.2.5). */
 
 typedef struct
@@ -70,7 +72,7 @@ sort (Item *items, guint n)
       insert (items, n);
       return;
     }
-  g_autofree Item *other = g_new (Item, n);
+  g_autofree Item *other = tf_new_many (Item, n);
   for (guint shift = 0; shift < 64; shift += 16)
     {
       sort_by_byte (items, other, n, shift);
@@ -81,7 +83,7 @@ sort (Item *items, guint n)
 static Item *
 items_of (const double *keys, guint n)
 {
-  Item *items = g_new (Item, n + 1);
+  Item *items = tf_new_many (Item, n + 1);
   for (guint k = 0; k < n; k++)
     items[k] = (Item){ key_of (keys[k]), k };
   sort (items, n);
@@ -91,7 +93,7 @@ items_of (const double *keys, guint n)
 void
 tf_sort_numbers (double *values, guint n)
 {
-  g_autofree double *given = g_memdup2 (values, n * sizeof *values);
+  g_autofree double *given = tf_dup_many (values, n, sizeof *values);
   g_autofree Item *items = items_of (values, n);
   for (guint k = 0; k < n; k++)
     values[k] = given[items[k].row];
@@ -100,7 +102,7 @@ tf_sort_numbers (double *values, guint n)
 guint *
 tf_sort_order (const double *keys, guint n)
 {
-  guint *order = g_new (guint, n + 1);
+  guint *order = tf_new_many (guint, n + 1);
   g_autofree Item *items = items_of (keys, n);
   for (guint k = 0; k < n; k++)
     order[k] = items[k].row;

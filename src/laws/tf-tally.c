@@ -8,6 +8,7 @@
 #include "tf-constants.h"
 #include "tf-joy-line-private.h"
 #include "tf-joy-slope.h"
+#include "tf-many.h"
 #include "tf-sort.h"
 
 enum
@@ -133,8 +134,8 @@ judge_all (TfTally *tally, const TfVerdict *verdicts, const TfDivides *divides)
 static void
 order_times (TfTally *tally)
 {
-  g_autofree double *times = g_new (double, tally->n + 1);
-  g_autofree guint *rows = g_new (guint, tally->n + 1);
+  g_autofree double *times = tf_new_many (double, tally->n + 1);
+  g_autofree guint *rows = tf_new_many (guint, tally->n + 1);
   guint n = 0;
   for (guint k = 0; k < tally->n; k++)
     if (tf_time_is_known (tf_sample_get (tally->sample, k)->time))
@@ -155,8 +156,8 @@ order_times (TfTally *tally)
 static void
 order_ratios (TfTally *tally)
 {
-  g_autofree double *ratios = g_new (double, tally->n + 1), *weights = g_new (double, tally->n + 1);
-  g_autofree guint *rows = g_new (guint, tally->n + 1);
+  g_autofree double *ratios = tf_new_many (double, tally->n + 1), *weights = tf_new_many (double, tally->n + 1);
+  g_autofree guint *rows = tf_new_many (guint, tally->n + 1);
   guint n = 0;
   for (guint k = 0; k < tally->n; k++)
     {
@@ -171,9 +172,9 @@ order_ratios (TfTally *tally)
     }
   g_autofree guint *order = tf_sort_order (ratios, n);
   tally->n_ratio = n;
-  tally->ratio = g_new (double, n + 1);
-  tally->weight = g_new (double, n + 1);
-  tally->member = g_new0 (guint8, n + 1);
+  tally->ratio = tf_new_many (double, n + 1);
+  tally->weight = tf_new_many (double, n + 1);
+  tally->member = tf_new0_many (guint8, n + 1);
   tally->block = g_new0 (double, n / BLOCK + 1);
   for (guint at = 0; at < n; at++)
     {
@@ -193,11 +194,11 @@ tf_tally_new (const TfSample *sample, const TfVerdict *verdicts, const TfDivides
   tally->verdict = *verdict;
   tally->joy = *joy;
   tally->n = tf_sample_get_n (sample);
-  tally->rows = g_new0 (Row, tally->n + 1);
-  tally->chance = g_new (float, tally->n + 1);
-  tally->by_time = g_new (guint, tally->n + 1);
-  tally->times = g_new (double, tally->n + 1);
-  tally->place = g_new (guint, tally->n + 1);
+  tally->rows = tf_new0_many (Row, tally->n + 1);
+  tally->chance = tf_new_many (float, tally->n + 1);
+  tally->by_time = tf_new_many (guint, tally->n + 1);
+  tally->times = tf_new_many (double, tally->n + 1);
+  tally->place = tf_new_many (guint, tally->n + 1);
   judge_all (tally, verdicts, divides);
   order_times (tally);
   order_ratios (tally);

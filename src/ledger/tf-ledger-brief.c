@@ -11,6 +11,7 @@
 #include <string.h>
 
 #include "tf-ledger-private.h"
+#include "tf-many.h"
 
 static const struct
 {
@@ -379,7 +380,7 @@ tf_ledger_briefs (TfLedger *ledger, const TfBriefQuery *query, GError **error)
   g_return_val_if_fail (ledger != NULL && query != NULL, NULL);
   g_autoptr (TfBriefs) out = g_new0 (TfBriefs, 1);
   gint64 n = tf_value (ledger, NULL, 0, "SELECT count (*) FROM brief", "") * TF_BRIEF_BLOCK;
-  out->rows = g_array_sized_new (FALSE, FALSE, sizeof (TfBrief), (guint)CLAMP (n, 1, 1 << 26));
+  out->rows = tf_array_of_many (sizeof (TfBrief), (guint)CLAMP (n, 1, 1 << 22));
   const Reading reading = { query, out };
   if (!tf_pack_each (ledger, TF_PACK_BRIEF, take_block, (gpointer)&reading, error)
       || !join_passages (ledger, out->rows, error))

@@ -80,6 +80,7 @@ static const struct
   [TF_PACK_BRIEF] = { "brief", 6, 1, sizeof (TfBrief), 2, tf_brief_append, SCRIPTS ("brief", "6") },
 };
 
+G_STATIC_ASSERT (TF_POINT_BLOCK == 1 << 8);
 G_STATIC_ASSERT (TF_BRIEF_BLOCK == 1 << 6);
 
 gboolean
@@ -223,6 +224,11 @@ tf_pack_each (TfLedger *ledger, TfPack pack, TfPackFunc func, gpointer user, GEr
       guint n;
       const guint8 *data = sqlite3_column_blob (query, 1);
       gconstpointer items = open_block (pack, data, (gsize)sqlite3_column_bytes (query, 1), &n);
+      if (items != NULL && (gsize)items % sizeof (gint64) == 0)
+        {
+          func (items, n, user);
+          continue;
+        }
       g_array_set_size (block, 0);
       if (items != NULL)
         g_array_append_vals (block, items, n); /* where they lie as their type asks */

@@ -8,6 +8,7 @@
  * dropped it. */
 
 #include "tf-ledger-private.h"
+#include "tf-many.h"
 
 #include <math.h>
 #include <string.h>
@@ -156,7 +157,7 @@ sort_points (GArray *points)
   TfPoint *from = (TfPoint *)(gpointer)points->data;
   if (n < 2 || end_of_run (from, 0, n) == n)
     return;
-  g_autofree TfPoint *other = g_new (TfPoint, n);
+  g_autofree TfPoint *other = tf_new_many (TfPoint, n);
   TfPoint *to = other;
   for (guint runs = 2; runs > 1;)
     {
@@ -199,9 +200,10 @@ GArray *
 tf_ledger_points (TfLedger *ledger, GError **error)
 {
   g_return_val_if_fail (ledger != NULL, NULL);
-  g_autoptr (GArray) points = g_array_new (FALSE, FALSE, sizeof (TfPoint));
   /* not in an older one that cannot be written */
   gboolean packed = tf_pack_is_there (ledger, TF_PACK_POINT);
+  gint64 n = packed ? tf_value (ledger, NULL, 0, "SELECT count (*) FROM pack", "") * TF_POINT_BLOCK : 0;
+  g_autoptr (GArray) points = tf_array_of_many (sizeof (TfPoint), (guint)CLAMP (n, 1, 1 << 22));
   if (!(packed ? tf_pack_each (ledger, TF_PACK_POINT, take_block, points, error)
                : read_rows (ledger, points, error)))
     return NULL;

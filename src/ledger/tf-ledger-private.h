@@ -232,7 +232,8 @@ typedef enum
 } TfPack;
 enum
 {
-  TF_BRIEF_BLOCK = 64 /* marks or hints of a block of briefs */
+  TF_POINT_BLOCK = 256, /* marks, hints or outside rows of a block of points */
+  TF_BRIEF_BLOCK = 64   /* marks or hints of a block of briefs */
 };
 /* The blocks that hold a mark or hint (kind as point.hint), or all of a frame's hints, of an outside
  * table's rows, of the ledger, are to be filled anew before the commit; of measures: briefs alone. */

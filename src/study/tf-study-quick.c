@@ -8,6 +8,7 @@
 
 #include "tf-distinct.h"
 #include "tf-joy-slope.h"
+#include "tf-many.h"
 #include "tf-sort.h"
 
 enum
@@ -107,8 +108,8 @@ order_ratios (TfStudyQuick *quick)
 {
   guint n = tf_sample_get_n (quick->all), m = 0;
   int form = quick->study->joy.form;
-  g_autofree double *keys = g_new (double, n + 1);
-  g_autofree Ratio *ratios = g_new (Ratio, n + 1);
+  g_autofree double *keys = tf_new_many (double, n + 1);
+  g_autofree Ratio *ratios = tf_new_many (Ratio, n + 1);
   for (guint k = 0; k < n; k++)
     {
       const TfSampleRow *row = tf_sample_get (quick->all, k);
@@ -120,7 +121,7 @@ order_ratios (TfStudyQuick *quick)
       m++;
     }
   g_autofree guint *order = tf_sort_order (keys, m);
-  quick->ratios = g_new (Ratio, m + 1);
+  quick->ratios = tf_new_many (Ratio, m + 1);
   quick->n_ratios = m;
   for (guint j = 0; j < m; j++)
     quick->ratios[j] = ratios[order[j]];
@@ -134,7 +135,7 @@ tf_study_quick_new (const TfStudy *study, const TfFindings *findings, const TfSa
     return NULL;
   guint n = tf_sample_get_n (all);
   TfStudyQuick *quick = g_new0 (TfStudyQuick, 1);
-  *quick = (TfStudyQuick){ .study = study, .all = all, .rows = g_new (Row, n + 1) };
+  *quick = (TfStudyQuick){ .study = study, .all = all, .rows = tf_new_many (Row, n + 1) };
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   gboolean any = g_hash_table_size (findings->changing) > 0;
   Making making = { quick, divides, study->verdict, study->joy, any ? findings->changing : NULL };

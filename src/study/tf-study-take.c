@@ -6,6 +6,7 @@
 #include "tf-distinct.h"
 #include "tf-ledger-brief.h"
 #include "tf-ledger-outside.h"
+#include "tf-many.h"
 #include "tf-sort.h"
 #include "tf-study-private.h"
 
@@ -121,7 +122,7 @@ take_brief (const Sources *sources, const TfBrief *b, TfMeasure *m, TfSampleRow 
 static guint *
 order_sources (const Sources *s, guint n)
 {
-  g_autofree double *times = g_new (double, n + 1);
+  g_autofree double *times = tf_new_many (double, n + 1);
   guint at = 0;
   for (guint k = 0; k < s->n_marks; k++)
     times[at++] = s->briefs[k].time_s;
@@ -141,7 +142,7 @@ take_sources (TfStudyTaken *taken, const Sources *s)
   g_autoptr (TfDistinct) passages = tf_distinct_new (n);
   TfMeasure measure = { 0 };
   taken->all = tf_sample_new_sized (n);
-  taken->facts = g_array_sized_new (FALSE, FALSE, sizeof (TfStudyFact), n);
+  taken->facts = tf_array_of_many (sizeof (TfStudyFact), n);
   for (guint k = 0; k < n; k++)
     {
       TfSampleRow row;

@@ -6,6 +6,7 @@
 
 #include "tf-bands.h"
 #include "tf-joy-slope.h"
+#include "tf-many.h"
 #include "tf-study-choice-private.h"
 #include "tf-study-private.h"
 #include "tf-study-quick.h"
@@ -41,7 +42,7 @@ static void
 count_verdicts (TfWhatIf *row, const TfSample *sample, const TfVerdict *verdicts)
 {
   guint n = tf_sample_get_n (sample);
-  g_autofree guint32 *regions = g_new (guint32, n + 1);
+  g_autofree guint32 *regions = tf_new_many (guint32, n + 1);
   for (guint k = 0; k < n; k++)
     {
       if (verdicts[k].kind == TF_VERDICT_CANNOT_SAY)

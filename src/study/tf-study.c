@@ -7,6 +7,7 @@
 #include <glib/gi18n-lib.h>
 
 #include "tf-distinct.h"
+#include "tf-many.h"
 #include "tf-sieve.h"
 #include "tf-study-private.h"
 
@@ -138,7 +139,7 @@ tf_study_judge_with (const TfStudy *study, const TfSample *sample, double later_
 {
   g_autoptr (TfDivides) divides = tf_study_dup_divides (study);
   guint n = tf_sample_get_n (sample);
-  Judging judging = { sample, divides, &study->verdict, later_s, g_new (TfVerdict, n + 1) };
+  Judging judging = { sample, divides, &study->verdict, later_s, tf_new_many (TfVerdict, n + 1) };
   const TfWork work = { .workers = workers };
   tf_bands_run (&work, n, judge_rows, &judging);
   return judging.verdicts;
@@ -171,7 +172,7 @@ average_tilts (TfFindings *findings)
 {
   guint n = 0;
   double sum = 0.0;
-  g_autofree double *tilts = g_new (double, tf_sample_get_n (findings->sample) + 1);
+  g_autofree double *tilts = tf_new_many (double, tf_sample_get_n (findings->sample) + 1);
   for (guint k = 0; k < tf_sample_get_n (findings->sample); k++)
     {
       double tilt = tf_sample_get (findings->sample, k)->axis_tilt_deg;
@@ -190,7 +191,7 @@ count_marks (TfFindings *findings, const TfStudyRows *rows)
 {
   guint n = tf_sample_get_n (findings->sample);
   g_autoptr (TfDistinct) picked = tf_distinct_new (n);
-  findings->marks = g_new0 (gint64, n + 1);
+  findings->marks = tf_new0_many (gint64, n + 1);
   for (guint k = 0; k < n; k++)
     {
       const TfSampleRow *pick = tf_sample_get (findings->sample, k);
@@ -243,7 +244,7 @@ static TfHeld *
 hold_alone (const TfFindings *findings)
 {
   guint n = tf_sample_get_n (findings->sample);
-  TfHeld *held = g_new0 (TfHeld, n + 1);
+  TfHeld *held = tf_new0_many (TfHeld, n + 1);
   for (guint k = 0; k < n; k++)
     if (findings->verdicts[k].kind != TF_VERDICT_CANNOT_SAY
         && !(tf_sample_get (findings->sample, k)->mu < TF_HELD_MU))
