@@ -137,18 +137,23 @@ live_clear (Live *live)
   g_clear_pointer (&live->before, tf_laws_answer_unref);
 }
 
+static void
+make_live (Live *live, TfLawsAnswer *before)
+{
+  if (live->before == before)
+    return;
+  live_clear (live);
+  live->before = tf_laws_answer_ref (before);
+  live->live = tf_study_live_new (before->study, before->findings);
+}
+
 /* The numbers that a divide moves, all else as in the answer before it was taken in hand. NULL: they
  * cannot be kept. */
 static TfLawsAnswer *
 move (const Question *question)
 {
   Live *live = question->live;
-  if (live->before != question->before)
-    {
-      live_clear (live);
-      live->before = tf_laws_answer_ref (question->before);
-      live->live = tf_study_live_new (question->before->study, question->before->findings);
-    }
+  make_live (live, question->before);
   if (live->live == NULL)
     return NULL;
   tf_study_live_move (live->live, question->study);
@@ -167,7 +172,21 @@ move (const Question *question)
   return answer;
 }
 
-/* From what a divide may be moved. */
+static gpointer
+prepare (TfLedger *ledger, gpointer data, GError **error)
+{
+  const Question *question = data;
+  make_live (question->live, question->before);
+  return NULL;
+}
+
+static void
+prepared (GObject *source, GAsyncResult *result, gpointer data)
+{
+  tf_lane_finish (result, NULL);
+}
+
+/* From what a divide may be moved. Of many rows that is made ready before one is taken in hand. */
 static void
 keep_full (TfLawsWork *work, const Question *question, TfLawsAnswer *answer)
 {
@@ -175,6 +194,13 @@ keep_full (TfLawsWork *work, const Question *question, TfLawsAnswer *answer)
     return;
   tf_laws_answer_unref (work->full);
   work->full = tf_laws_answer_ref (answer);
+  if (question->rows == NULL || tf_study_taken_get_n (question->rows) <= MANY)
+    return;
+  Question *ready = g_new0 (Question, 1);
+  ready->before = tf_laws_answer_ref (answer);
+  ready->live = &work->live;
+  tf_lane_push (work->lane, NULL, work->cancellable, prepare, ready, question_free, NULL, prepared,
+                NULL);
 }
 
 /* -- the draws: a thread of their own, so that the next question need not wait for them --------- */
