@@ -156,9 +156,33 @@ test_order (void)
   g_assert_cmpuint (tf_sample_get (picks, 0)->row, ==, 4);
 }
 
+/* Places of a part of a part are those of the whole; what it was picked by stays. */
+static void
+test_parts (void)
+{
+  g_autoptr (TfSample) marks = tf_sample_new ();
+  for (guint32 passage = 1; passage <= 3; passage++)
+    add_passage (marks, passage, 3.0);
+  TfSamplingParams params = rule (TF_SAMPLING_FLUX);
+  TfSample *picks = tf_sampling_pick (marks, &params, NULL);
+  g_autoptr (TfSample) last = tf_sample_new_part (picks);
+  tf_sample_add_place (last, 2);
+  guint place = tf_sample_get_places (picks)[2];
+  int bracketed = tf_sample_get_bracketed (picks, 2);
+  tf_sample_take_whole (last, picks);
+  g_assert_true (tf_sample_get_root (last) == marks);
+  g_assert_cmpuint (tf_sample_get_places (last)[0], ==, place);
+  g_assert_cmpint (tf_sample_get_bracketed (last, 0), ==, bracketed);
+  g_assert_cmpuint (tf_sample_get (last, 0)->passage, ==, 3);
+  g_autoptr (TfSample) copy = tf_sample_copy (last);
+  g_assert_null (tf_sample_get_root (copy));
+  g_assert_cmpint (tf_sample_get_bracketed (copy, 0), ==, bracketed);
+}
+
 void
 test_laws_add_sampling (void)
 {
+  g_test_add_func ("/laws/sampling/parts", test_parts);
   g_test_add_func ("/laws/sampling/greatest-flux-and-its-bracket", test_greatest_flux);
   g_test_add_func ("/laws/sampling/nearest-the-central-meridian", test_central_meridian);
   g_test_add_func ("/laws/sampling/the-mean-is-axial", test_mean);
