@@ -16,20 +16,20 @@
 
 const TfLawsChart tf_laws_chart_table[] = {
   { "hale", N_ ("Hale: share that breaks"), tf_hale_bars_draw, tf_hale_bars_hit, tf_hale_bars_dup_places, tf_hale_bars_dup_sign,
-    tf_hale_bars_dup_description, tf_hale_bars_height, tf_hale_bars_has },
+    tf_hale_bars_dup_description, tf_hale_bars_height, tf_hale_bars_has, FALSE },
   { "joy", N_ ("Joy: axis tilt against latitude"), tf_joy_plot_draw, tf_joy_plot_hit, tf_joy_plot_dup_places, tf_joy_plot_dup_sign,
-    tf_joy_plot_dup_description, tf_joy_plot_height, tf_joy_plot_has },
+    tf_joy_plot_dup_description, tf_joy_plot_height, tf_joy_plot_has, TRUE },
   { "tilts", N_ ("Axis tilts"), tf_tilt_bars_draw, tf_tilt_bars_hit, tf_tilt_bars_dup_places, tf_tilt_bars_dup_sign,
     tf_tilt_bars_dup_description,
-    tf_tilt_bars_height, tf_tilt_bars_has },
+    tf_tilt_bars_height, tf_tilt_bars_has, TRUE },
   { "separation", N_ ("Scatter about Joy’s law against separation"), tf_separation_plot_draw,
     tf_separation_plot_hit, tf_separation_plot_dup_places, tf_separation_plot_dup_sign,
     tf_separation_plot_dup_description, tf_separation_plot_height,
-    tf_separation_plot_has },
+    tf_separation_plot_has, TRUE },
   { "emergence", N_ ("Since emergence"), tf_emergence_plot_draw, tf_emergence_plot_hit, tf_emergence_plot_dup_places, tf_emergence_plot_dup_sign,
-    tf_emergence_plot_dup_description, tf_emergence_plot_height, tf_emergence_plot_has },
+    tf_emergence_plot_dup_description, tf_emergence_plot_height, tf_emergence_plot_has, TRUE },
   { "wings", N_ ("Wings of this study"), tf_wings_figure_draw, tf_wings_figure_hit, tf_wings_figure_dup_places, tf_wings_figure_dup_sign,
-    tf_wings_figure_dup_description, tf_wings_figure_height, tf_wings_figure_has },
+    tf_wings_figure_dup_description, tf_wings_figure_height, tf_wings_figure_has, TRUE },
   { NULL },
 };
 

@@ -66,6 +66,7 @@ typedef struct
   double (*height) (const TfLawsCharts *charts, const TfChartStyle *style, double width);
   /** has: whether there is anything to show. */
   gboolean (*has) (const TfLawsCharts *charts);
+  gboolean elastic; /* it can be lower than its height(), where there is less room */
 } TfLawsChart;
 
 typedef enum

@@ -16,7 +16,7 @@ struct _TfChartView
   TfLawsCharts *charts;
   cairo_surface_t *picture; /* what was drawn last */
   int picture_scale;
-  gboolean stale, drawing;
+  gboolean stale, drawing, fits;
   int last; /* row opened last; -1 */
   double x, y; /* of the sign that the keys are at; x NaN: none */
   int sign;
@@ -149,7 +149,7 @@ snapshot (GtkWidget *widget, GtkSnapshot *snapshot)
     start_drawing (self);
   if (self->picture != NULL && self->charts != NULL)
     tf_surface_append (snapshot, widget, self->picture, 0, 0, self->picture_scale);
-  if (gtk_widget_has_focus (widget) && isfinite (self->x))
+  if (gtk_widget_has_focus (widget) && self->sign >= 0)
     snapshot_sign (self, snapshot, width, height);
 }
 
@@ -208,11 +208,23 @@ open_at (TfChartView *self, double x, double y)
   return TRUE;
 }
 
+/* The keys go on from here. */
+static void
+start_at (TfChartView *self, double x, double y)
+{
+  leave_sign (self);
+  self->x = x;
+  self->y = y;
+  describe (self);
+  gtk_widget_queue_draw (GTK_WIDGET (self));
+}
+
 static void
 pressed (GtkGestureClick *gesture, int n, double x, double y, TfChartView *self)
 {
   gtk_widget_grab_focus (GTK_WIDGET (self));
-  open_at (self, x, y);
+  if (!open_at (self, x, y))
+    start_at (self, x, y);
 }
 
 /* What is under the pointer, without a click. */
@@ -255,7 +267,7 @@ key_pressed (GtkEventControllerKey *keys, guint key, guint code, GdkModifierType
     case GDK_KEY_Return:
     case GDK_KEY_KP_Enter:
     case GDK_KEY_space:
-      return isfinite (self->x) && open_at (self, self->x, self->y);
+      return self->sign >= 0 && open_at (self, self->x, self->y);
     default:
       return FALSE;
     }
@@ -274,8 +286,9 @@ describe (TfChartView *self)
 {
   if (self->chart == NULL)
     return;
+  g_autofree char *enlarged = g_strdup_printf (_ ("%s, enlarged"), _ (self->chart->title));
   gtk_accessible_update_property (GTK_ACCESSIBLE (self), GTK_ACCESSIBLE_PROPERTY_LABEL,
-                                  _ (self->chart->title), -1);
+                                  self->fits ? enlarged : _ (self->chart->title), -1);
   g_autofree char *all = self->charts != NULL ? self->chart->dup_description (self->charts)
                                               : g_strdup (_ ("Nothing is worked out yet."));
   tf_widget_describe (GTK_WIDGET (self), self->said != NULL
@@ -332,6 +345,17 @@ measure (GtkWidget *widget, GtkOrientation orientation, int for_size, int *minim
                       ? self->chart->height (self->charts, &style, width)
                       : width * 0.7;
   *minimum = *natural = (int)MAX (height, 120);
+  if (self->fits && self->chart != NULL && self->chart->elastic)
+    *minimum = (int)MIN (*natural, style.text_pt * 26);
+}
+
+void
+tf_chart_view_set_fits (TfChartView *self, gboolean fits)
+{
+  g_return_if_fail (TF_IS_CHART_VIEW (self));
+  self->fits = fits;
+  describe (self);
+  gtk_widget_queue_resize (GTK_WIDGET (self));
 }
 
 static void

@@ -25,4 +25,7 @@ void tf_chart_view_set_chart (TfChartView *view, const TfLawsChart *chart);
 /** tf_chart_view_show: (nullable) @charts; kept alive. */
 void tf_chart_view_show (TfChartView *view, TfLawsCharts *charts);
 
+/** tf_chart_view_set_fits: it is the enlarged one: it takes what room there is, as far as the chart can. */
+void tf_chart_view_set_fits (TfChartView *view, gboolean fits);
+
 G_END_DECLS

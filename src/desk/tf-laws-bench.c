@@ -414,6 +414,7 @@ tf_laws_bench_init (TfLawsBench *self)
   self->large = TF_CHART_VIEW (tf_chart_view_new (&tf_laws_chart_table[0]));
   g_signal_connect_object (self->large, "row-chosen", G_CALLBACK (row_chosen), self, 0);
   gtk_widget_set_vexpand (GTK_WIDGET (self->large), TRUE);
+  tf_chart_view_set_fits (self->large, TRUE);
   gtk_box_append (self->one, GTK_WIDGET (self->large));
   self->power = TF_POWER_VIEW (tf_power_view_new ());
   gtk_box_append (self->power_box, GTK_WIDGET (self->power));

@@ -123,6 +123,79 @@ def _(given):
             w.wait("the share to be what it was", lambda: share(w) == before)
 
 
+def ring(before, after, area):
+    """Middle of the ring that came between two pictures: of what changed within the area, the piece that is as
+    wide as high."""
+    one, two = (GdkPixbuf.Pixbuf.new_from_file(path) for path in (before, after))
+    a, b, stride, parts = one.get_pixels(), two.get_pixels(), one.get_rowstride(), one.get_n_channels()
+    left, top, width, height = (int(v) for v in area)
+    changed = set()
+    for y in range(top, min(top + height, one.get_height())):
+        for x in range(left, min(left + width, one.get_width())):
+            at = y * stride + x * parts
+            if a[at:at + 3] != b[at:at + 3]:
+                changed.add((x, y))
+    while changed:
+        piece, edge = set(), [changed.pop()]
+        while edge:
+            x, y = edge.pop()
+            piece.add((x, y))
+            for step in ((x + dx, y + dy) for dx in (-1, 0, 1) for dy in (-1, 0, 1)):
+                if step in changed:
+                    changed.remove(step)
+                    edge.append(step)
+        xs, ys = [p[0] for p in piece], [p[1] for p in piece]
+        wide, high = max(xs) - min(xs) + 1, max(ys) - min(ys) + 1
+        if 10 <= wide <= 30 and abs(wide - high) <= 2:
+            return (max(xs) + min(xs)) // 2, (max(ys) + min(ys)) // 2
+    return None
+
+
+@scenario("an outlier of the Joy plot is met by keys and opened on Mark; a click on its dot opens the same region")
+def _(given):
+    with tempfile.TemporaryDirectory(prefix="tiltfield-laws-outlier-") as folder:
+        ledger = made(given, folder, 300)
+        title = "Joy: axis tilt against latitude, enlarged"
+        with Window(given, [ledger]) as w:
+            open_laws(w)
+            w.wait("all intervals", lambda: "Drawing the intervals" not in w.texts())
+            w.action("enlarge", w.text("joy"))
+
+            def chart():
+                node = w.find(title)
+                return node if node is not None and w.is_laid_out(node) else None
+
+            def said():
+                node = chart()
+                return node.description if node is not None else ""
+            w.wait("the large chart", lambda: chart() is not None)
+            left, top, width, height = w.on_screen(chart())
+            w.click(left + width - 20, top + height - 12)  # below the plot: nothing is there to be opened
+            w.wait("the chart to have the keyboard", lambda: w.focused_name() == title)
+            before, after = (os.path.join(w.base, name) for name in ("before.png", "after.png"))
+            w.picture(before)
+            w.key("Up")
+            w.wait("a sign to be told", lambda: said().startswith("At "))
+            words = said()
+            tilt = re.search(r"tilt ([-+][\d.]+)", words)
+            if tilt is None or float(tilt.group(1)) > 0:
+                raise Failed(f"the first from below is no outlier: {words[:120]}")
+            w.picture(after)
+            place = ring(before, after, (left, top, width, height))
+            if place is None:
+                raise Failed("no ring stands about the sign")
+            w.key("Return")
+            w.wait("the Mark bench", lambda: w.state("bench") == "mark")
+            name = re.compile(r"T\d{4}-\d+")
+            w.wait("its region in the slip", lambda: name.search(w.texts()))
+            chosen = name.search(w.texts()).group(0)
+            w.action("bench", w.text("laws"))
+            w.wait("the chart again", lambda: chart() is not None)
+            w.click(*place)
+            w.wait("the Mark bench by a click", lambda: w.state("bench") == "mark")
+            w.wait("the same region", lambda: chosen in w.texts())
+
+
 @scenario("a condition is built with pickers, n changes, the study is kept and found again; the axial dipole is told")
 def _(given):
     with tempfile.TemporaryDirectory(prefix="tiltfield-laws-study-") as folder:
