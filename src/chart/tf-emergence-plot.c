@@ -179,19 +179,45 @@ draw_panel (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style, 
   draw_counts (cr, charts, &plot, style, plot.plot.y + plot.plot.height + text * 1.9);
 }
 
+static gboolean
+has_signs (const TfLawsCharts *charts)
+{
+  const GArray *ages = charts->ages[TF_EMERGENCE_WHOLE];
+  for (guint k = 0; k < ages->len; k++)
+    for (int panel = 0; panel < PANELS; panel++)
+      if (spread_of (&g_array_index (ages, TfEmergenceAge, k), panel)->n >= LEAST)
+        return TRUE;
+  return FALSE;
+}
+
+/* Why there is nothing to see; NULL: there is. */
+static char *
+dup_missing (const TfLawsCharts *charts)
+{
+  if (!tf_emergence_plot_has (charts))
+    return g_strdup (_ ("No region is known to be born on the disk."));
+  if (has_signs (charts))
+    return NULL;
+  return g_strdup_printf (g_dngettext (GETTEXT_PACKAGE,
+                                       "%u passage born on the disk: no age has the %d that a median takes.",
+                                       "%u passages born on the disk: no age has the %d that a median takes.",
+                                       charts->n_born),
+                          charts->n_born, LEAST);
+}
+
 void
 tf_emergence_plot_draw (cairo_t *cr, const TfLawsCharts *charts, const TfChartStyle *style,
                         TfArea area)
 {
   double text = style->text_pt, y = area.y + area.height - foot_height (style) + text * 2.6;
-  if (!tf_emergence_plot_has (charts))
-    {
-      tf_chart_text (cr, style, area.x + area.width / 2, area.y + area.height / 2, 0.5, 0.5,
-                     style->faint, _ ("No region is known to be born on the disk."));
-      return;
-    }
   TfChartStyle small = *style;
   small.text_pt = text * 0.86;
+  g_autofree char *missing = dup_missing (charts);
+  if (missing != NULL)
+    {
+      tf_plot_note (cr, &small, area, area.y + area.height / 2, missing);
+      return;
+    }
   cairo_save (cr);
   for (int panel = 0; panel < PANELS; panel++)
     draw_panel (cr, charts, style, area, panel);
@@ -270,8 +296,9 @@ tf_emergence_plot_dup_sign (const TfLawsCharts *charts, guint k)
 char *
 tf_emergence_plot_dup_description (const TfLawsCharts *charts)
 {
-  if (!tf_emergence_plot_has (charts))
-    return g_strdup (_ ("No region is known to be born on the disk."));
+  char *missing = dup_missing (charts);
+  if (missing != NULL)
+    return missing;
   GString *text = g_string_new (NULL);
   const GArray *ages = charts->ages[TF_EMERGENCE_WHOLE];
   g_string_append_printf (text, _ ("%u passages born on the disk. "), charts->n_born);

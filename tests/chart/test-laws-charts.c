@@ -241,11 +241,11 @@ many_regions_are_drawn_in_no_time (void)
 
 /* A region that grows on the disk: tilt and separation by age; the median of each age is drawn where
  * it is. */
-static void
-emergence_is_drawn_by_age (void)
+static TfEmergence *
+emergence_of (guint passages)
 {
   g_autoptr (TfSample) every = tf_sample_new ();
-  for (guint passage = 1; passage <= 9; passage++)
+  for (guint passage = 1; passage <= passages; passage++)
     for (int half = 0; half < 12; half++)
       {
         TfSampleRow row;
@@ -263,7 +263,13 @@ emergence_is_drawn_by_age (void)
       }
   TfEmergenceParams params;
   tf_options_reset (tf_emergence_options, &params);
-  g_autoptr (TfEmergence) emergence = tf_emergence_new (every, &params);
+  return tf_emergence_new (every, &params);
+}
+
+static void
+emergence_is_drawn_by_age (void)
+{
+  g_autoptr (TfEmergence) emergence = emergence_of (9), two = emergence_of (2);
   g_assert_cmpuint (emergence->passages, ==, 9);
   g_auto (MadeStudy) study = made_study_new (50, 1);
   study.facts.emergence = emergence;
@@ -277,6 +283,13 @@ emergence_is_drawn_by_age (void)
   g_assert_cmpuint (picture_count (&picture, style.teal, 0.25), >, 100);    /* lines of halves */
   g_autofree char *words = chart->dup_description (charts);
   g_assert_nonnull (strstr (words, "9 passages"));
+  study.facts.emergence = two; /* no median: said, rather than empty frames */
+  g_autoptr (TfLawsCharts) few = tf_laws_charts_new (&study.facts);
+  g_auto (Picture) said = draw (chart, few, &style, &area);
+  g_assert_cmpuint (picture_count (&said, style.line, 0.05) * 10, <,
+                    picture_count (&picture, style.line, 0.05)); /* letters alone, no frames */
+  g_autofree char *why = chart->dup_description (few);
+  g_assert_nonnull (strstr (why, "2 passages born"));
 }
 
 /* -- files ----------------------------------------------------------------------------------- */
