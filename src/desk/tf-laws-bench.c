@@ -201,6 +201,16 @@ what_if_activated (GtkListView *view, guint place, TfLawsBench *self)
                                 tf_what_if_item_get_name (item));
 }
 
+/* The list is one stop on the way through the bench: the arrows go along its rows. */
+static gboolean
+what_if_key (GtkEventControllerKey *keys, guint key, guint code, GdkModifierType state, TfLawsBench *self)
+{
+  gboolean back = key == GDK_KEY_ISO_Left_Tab || (state & GDK_SHIFT_MASK) != 0;
+  if (key != GDK_KEY_Tab && key != GDK_KEY_ISO_Left_Tab)
+    return FALSE;
+  return gtk_widget_grab_focus (back ? GTK_WIDGET (self->words) : GTK_WIDGET (self->dipole));
+}
+
 /* -- charts ---------------------------------------------------------------------------------- */
 
 static void
@@ -425,4 +435,9 @@ tf_laws_bench_init (TfLawsBench *self)
   gtk_list_view_set_model (self->what_if, GTK_SELECTION_MODEL (model));
   gtk_list_view_set_factory (self->what_if, factory);
   g_signal_connect_object (self->what_if, "activate", G_CALLBACK (what_if_activated), self, 0);
+  tf_widget_focus_when_open (GTK_WIDGET (self->dipole), GTK_WIDGET (self->dipoles));
+  GtkEventController *keys = gtk_event_controller_key_new ();
+  gtk_event_controller_set_propagation_phase (keys, GTK_PHASE_CAPTURE);
+  g_signal_connect_object (keys, "key-pressed", G_CALLBACK (what_if_key), self, 0);
+  gtk_widget_add_controller (GTK_WIDGET (self->what_if), keys);
 }

@@ -8,6 +8,7 @@
 
 #include "tf-condition-list.h"
 #include "tf-option-row.h"
+#include "tf-widget-style.h"
 
 typedef struct
 {
@@ -130,6 +131,7 @@ add_part (TfLawsStudy *self, guint p)
   if (p == 0)
     add_sieve (self, box);
   gtk_expander_set_child (GTK_EXPANDER (part), box);
+  tf_widget_focus_when_open (part, box);
   gtk_box_append (GTK_BOX (self->box), part);
 }
 

@@ -105,3 +105,9 @@ tf_widget_name_inside (GtkWidget *widget, const char *name)
       tf_widget_name_inside (child, name);
     }
 }
+
+void
+tf_widget_focus_when_open (GtkWidget *expander, GtkWidget *child)
+{
+  g_object_bind_property (expander, "expanded", child, "can-focus", G_BINDING_SYNC_CREATE);
+}

@@ -27,4 +27,8 @@ gboolean tf_widget_paints_textures (GtkWidget *widget);
 void tf_surface_append (GtkSnapshot *snapshot, GtkWidget *widget, cairo_surface_t *surface,
                         double x, double y, double scale);
 
+/** tf_widget_focus_when_open: what is in a closed GtkExpander is passed by on the way of Tab: GTK 4.8 would ask
+ * for the window of a child that has none then. */
+void tf_widget_focus_when_open (GtkWidget *expander, GtkWidget *child);
+
 G_END_DECLS

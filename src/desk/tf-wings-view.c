@@ -118,17 +118,21 @@ take_divides (TfWingsView *self)
   return before < after || before > after || isnan (before) != isnan (after);
 }
 
-/* A provisional minimum in hand may lie beyond what is shown. */
+/* What is in hand may lie beyond what is shown: an end, or a provisional minimum with its divide. */
 static gboolean
 show_hold (TfWingsView *self, const TfDivideHold *hold)
 {
-  double end = tf_time_year (hold->times[TF_WINGS_END]), margin = 0.5;
-  if (!hold->in_hand || !(end + margin > self->wings.to_year)
-      || tf_time_year (hold->times[TF_WINGS_MINIMUM]) < self->wings.from_year)
+  gboolean provisional = tf_cycle_find (hold->cycle) == NULL;
+  int handle = provisional ? TF_WINGS_END : hold->handle;
+  if (!hold->in_hand || handle == TF_WINGS_WHOLE || handle == TF_WINGS_BAND)
+    return FALSE;
+  double year = tf_time_year (hold->times[handle]), margin = 0.5;
+  if (year >= self->wings.from_year && year <= self->wings.to_year)
     return FALSE;
   self->widened |= self->fitted;
   self->fitted = FALSE;
-  self->wings.to_year = end + margin;
+  self->wings.from_year = fmin (self->wings.from_year, year - margin);
+  self->wings.to_year = fmax (self->wings.to_year, year + margin);
   return TRUE;
 }
 
