@@ -297,9 +297,10 @@ sigma_of (const GArray *sorted, double centre, double most, guint fewest, float 
 
 /* And a ring here. */
 static void
-judge_ring (guint band, guint first, guint n, guint worker, gpointer data)
+judge_ring (guint turn, guint first, guint n, guint worker, gpointer data)
 {
   Sample *sample = data;
+  guint band = TF_NOISE_RINGS - 1 - turn; /* the largest first */
   double sum = 0;
   g_autoptr (GArray) pixels = g_array_new (FALSE, FALSE, sizeof (Pixel));
   for (guint k = 0; k < PARTS; k++)

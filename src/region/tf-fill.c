@@ -39,7 +39,7 @@ struct _TfFill
   GArray *edges;     /* Edge */
   GArray *row_edges; /* guint: edges that touch each row of cells */
   guint row_first[CELLS + 1];
-  guint8 cell[CELLS][CELLS];
+  guint8 cell[CELLS * CELLS + 1]; /* the last: what lies off the grid, always outside */
 };
 
 static double
@@ -136,7 +136,7 @@ mark_edge (TfFill *fill, const Edge *e, guint row)
   guint first = clamp_cell ((MIN (ua, ub) - fill->u_min) / fill->u_step - 1.0);
   guint last = clamp_cell ((MAX (ua, ub) - fill->u_min) / fill->u_step + 1.0);
   for (guint c = first; c <= last; c++)
-    fill->cell[row][c] = CELL_MIXED;
+    fill->cell[row * CELLS + c] = CELL_MIXED;
 }
 
 /* The first and last row of cells that an edge may touch. */
@@ -167,7 +167,7 @@ static void
 settle_row (TfFill *fill, guint row)
 {
   double v = fill->v_min + (row + 0.5) * fill->v_step;
-  guint8 *cells = fill->cell[row];
+  guint8 *cells = fill->cell + (gsize)row * CELLS;
   for (guint c = 0, end; c < CELLS; c = end + 1)
     {
       const guint8 *mixed = memchr (cells + c, CELL_MIXED, CELLS - c);
@@ -246,7 +246,7 @@ tf_fill_contains (const TfFill *fill, const double unit[3])
   double c = (u - fill->u_min) / fill->u_step, r = (v - fill->v_min) / fill->v_step;
   if (!(c >= 0.0 && c < CELLS && r >= 0.0 && r < CELLS))
     return FALSE;
-  guint8 cell = fill->cell[(guint)r][(guint)c];
+  guint8 cell = fill->cell[(guint)r * CELLS + (guint)c];
   if (cell == CELL_MIXED)
     return test_edges (fill, (guint)r, u, v);
   return cell == CELL_INSIDE;
@@ -259,10 +259,10 @@ typedef struct
   guint stride;
 } Points;
 
-/* Where in the grid each point lies; a point that the plane does not hold, or that is none, lies
- * outside. */
+/* In which cell each point lies; a point that the plane does not hold, or that is none, lies off
+ * the grid. Without a branch, so that it runs on vectors. */
 static inline void
-find_cells (const TfFill *fill, const Points *p, guint stride, guint n, float *column, float *row)
+find_cells (const TfFill *fill, const Points *p, guint stride, guint n, gint32 *cell)
 {
   const double *w = fill->west, *m = fill->north, *c = fill->centre;
   const double *px = p->x, *py = p->y, *pz = p->z;
@@ -273,22 +273,25 @@ find_cells (const TfFill *fill, const Points *p, guint stride, guint n, float *c
       double x = px[k * stride], y = py[k * stride], z = pz[k * stride];
       double along = x * c[0] + y * c[1] + z * c[2],
              over = along > 0.05 ? 1.0 / along : (double)NAN;
-      column[k] = (float)((x * w[0] + y * w[1] + z * w[2]) * over * su + u0);
-      row[k] = (float)((x * m[0] + y * m[1] + z * m[2]) * over * sv + v0);
+      float column = (float)((x * w[0] + y * w[1] + z * w[2]) * over * su + u0);
+      float row = (float)((x * m[0] + y * m[1] + z * m[2]) * over * sv + v0);
+      gboolean there = (column >= 0.0f) & (column < CELLS) & (row >= 0.0f) & (row < CELLS);
+      gint32 i = (gint32)(there ? column : 0.0f), j = (gint32)(there ? row : 0.0f);
+      cell[k] = there ? j * CELLS + i : CELLS * CELLS;
     }
 }
 
 /* The stride is known where it is one of these, so that both run on vectors. */
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-find_cells_apart (const TfFill *fill, const Points *p, guint n, float *column, float *row)
+find_cells_apart (const TfFill *fill, const Points *p, guint n, gint32 *cell)
 {
-  find_cells (fill, p, 1, n, column, row);
+  find_cells (fill, p, 1, n, cell);
 }
 
 __attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static void
-find_cells_together (const TfFill *fill, const Points *p, guint n, float *column, float *row)
+find_cells_together (const TfFill *fill, const Points *p, guint n, gint32 *cell)
 {
-  find_cells (fill, p, 3, n, column, row);
+  find_cells (fill, p, 3, n, cell);
 }
 
 static gboolean
@@ -303,23 +306,16 @@ contains_point (const TfFill *fill, const Points *p, gsize k)
 static void
 ask_some (const TfFill *fill, const Points *p, guint n, guint8 *inside)
 {
-  float column[CHUNK], row[CHUNK];
+  gint32 cell[CHUNK];
   if (p->stride == 1)
-    find_cells_apart (fill, p, n, column, row);
+    find_cells_apart (fill, p, n, cell);
   else
-    find_cells_together (fill, p, n, column, row);
+    find_cells_together (fill, p, n, cell);
   for (guint k = 0; k < n; k++)
-    {
-      float c = column[k], r = row[k];
-      inside[k] = 0;
-      if (!(c >= 0.0f && c < CELLS && r >= 0.0f && r < CELLS))
-        continue;
-      guint8 cell = fill->cell[(guint)r][(guint)c];
-      if (cell == CELL_MIXED)
-        inside[k] = contains_point (fill, p, k) ? 1 : 0;
-      else
-        inside[k] = cell == CELL_INSIDE;
-    }
+    inside[k] = fill->cell[cell[k]];
+  for (guint k = 0; k < n; k++)
+    if (inside[k] == CELL_MIXED)
+      inside[k] = contains_point (fill, p, k) ? 1 : 0;
 }
 
 static void

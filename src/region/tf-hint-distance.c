@@ -7,39 +7,43 @@
 
 static const float FAR = 1e9f;
 
-/* Along columns: nearest label above or below, by two sweeps. */
+/* Along columns, all of them a row at a time: nearest label below each cell's row or in it. */
 static void
-columns (const gint32 *label, guint width, guint height, gint32 *nearest, float *distance)
+sweep_up (const gint32 *label, guint width, guint height, gint32 *nearest, float *distance)
 {
+  for (guint y = 0; y < height; y++)
+    {
+      gsize k = (gsize)y * width;
+      for (guint x = 0; x < width; x++, k++)
+        {
+          gint32 before = y > 0 ? nearest[k - width] : -1;
+          float one_more = before >= 0 ? distance[k - width] + 1.0f : FAR;
+          nearest[k] = label[k] >= 0 ? label[k] : before;
+          distance[k] = label[k] >= 0 ? 0.0f : one_more;
+        }
+    }
+}
+
+/* What comes from above is taken where it is nearer. */
+static void
+sweep_down (const gint32 *label, guint width, guint height, gint32 *nearest, float *distance)
+{
+  g_autofree gint32 *last = g_new (gint32, MAX (width, 1));
+  g_autofree float *away = g_new (float, MAX (width, 1));
   for (guint x = 0; x < width; x++)
     {
-      gint32 last = -1;
-      guint at = 0;
-      for (guint y = 0; y < height; y++)
+      last[x] = -1;
+      away[x] = FAR;
+    }
+  for (guint y = height; y-- > 0;)
+    {
+      gsize k = (gsize)y * width;
+      for (guint x = 0; x < width; x++, k++)
         {
-          gsize k = (gsize)y * width + x;
-          if (label[k] >= 0)
-            {
-              last = label[k];
-              at = y;
-            }
-          nearest[k] = last;
-          distance[k] = last >= 0 ? (float)(y - at) : FAR;
-        }
-      last = -1;
-      for (guint y = height; y-- > 0;)
-        {
-          gsize k = (gsize)y * width + x;
-          if (label[k] >= 0)
-            {
-              last = label[k];
-              at = y;
-            }
-          if (last >= 0 && (float)(at - y) < distance[k])
-            {
-              nearest[k] = last;
-              distance[k] = (float)(at - y);
-            }
+          last[x] = label[k] >= 0 ? label[k] : last[x];
+          away[x] = label[k] >= 0 ? 0.0f : last[x] >= 0 ? away[x] + 1.0f : FAR;
+          nearest[k] = away[x] < distance[k] ? last[x] : nearest[k];
+          distance[k] = away[x] < distance[k] ? away[x] : distance[k];
         }
     }
 }
@@ -104,7 +108,8 @@ tf_hint_nearest (const gint32 *label, guint width, guint height, gint32 *nearest
   g_autofree double *start = g_new (double, width), *heights = g_new (double, width);
   g_autofree gint32 *labels = g_new (gint32, width);
   Envelope e = { vertex, start, heights, labels };
-  columns (label, width, height, nearest, distance);
+  sweep_up (label, width, height, nearest, distance);
+  sweep_down (label, width, height, nearest, distance);
   for (guint y = 0; y < height; y++)
     row (&e, width, nearest + (gsize)y * width, distance + (gsize)y * width);
 }

@@ -286,21 +286,33 @@ ring_of (double mu, double edge)
   return (guint)CLAMP ((mu - edge) / (1.0 - edge) * RINGS, 0.0, RINGS - 1.0);
 }
 
-/* Rings with too few cells take the value of the nearest good one. */
-static void
-fill_rings (const TfHintGrid *g, double sigma[RINGS])
+typedef struct
 {
   GArray *sizes[RINGS];
+  double *sigma;
+} Rings;
+
+/* A "band" of the pool is a ring here. */
+static void
+judge_ring (guint ring, guint first, guint n, guint worker, gpointer data)
+{
+  const Rings *rings = data;
+  rings->sigma[ring] = rings->sizes[ring]->len >= RING_CELLS ? clipped_mad (rings->sizes[ring]) : (double)NAN;
+}
+
+/* Rings with too few cells take the value of the nearest good one. */
+static void
+fill_rings (const TfHintGrid *g, const TfWork *work, double sigma[RINGS])
+{
+  Rings rings = { .sigma = sigma };
   for (guint r = 0; r < RINGS; r++)
-    sizes[r] = g_array_new (FALSE, FALSE, sizeof (float));
+    rings.sizes[r] = g_array_new (FALSE, FALSE, sizeof (float));
   for (gsize k = 0; k < (gsize)g->n * g->n; k++)
     if (isfinite (g->field[k]))
-      g_array_append_val (sizes[ring_of (g->mu[k], g->edge_mu)], ((float){ fabsf (g->field[k]) }));
+      g_array_append_val (rings.sizes[ring_of (g->mu[k], g->edge_mu)], ((float){ fabsf (g->field[k]) }));
+  tf_bands_run (work, RINGS * TF_BAND_ROWS, judge_ring, &rings);
   for (guint r = 0; r < RINGS; r++)
-    {
-      sigma[r] = sizes[r]->len >= RING_CELLS ? clipped_mad (sizes[r]) : (double)NAN;
-      g_array_unref (sizes[r]);
-    }
+    g_array_unref (rings.sizes[r]);
   for (guint step = 1; step < RINGS; step++)
     for (guint r = 0; r < RINGS; r++)
       if (isnan (sigma[r]))
@@ -335,9 +347,10 @@ white_noise (const TfFrame *frame, const TfHintParams *p, double scale, double m
  * noise, which is Gaussian: what noise explains beyond half of the scatter brings the level down to noise-sigma. Without this a
  * coarse or noisy frame would lose faint poles that a better frame of the same Sun shows. */
 static void
-fill_lows (const TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, double scale, double low[RINGS])
+fill_lows (const TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, double scale, const TfWork *work,
+           double low[RINGS])
 {
-  fill_rings (g, low);
+  fill_rings (g, work, low);
   for (guint r = 0; r < RINGS; r++)
     {
       double white = white_noise (frame, p, scale, g->edge_mu + (r + 0.5) * (1.0 - g->edge_mu) / RINGS) / low[r];
@@ -347,11 +360,11 @@ fill_lows (const TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, dou
 }
 
 static void
-fill_levels (TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, double scale)
+fill_levels (TfHintGrid *g, const TfHintParams *p, const TfFrame *frame, double scale, const TfWork *work)
 {
   double lows[RINGS];
   gsize there = 0, above = 0;
-  fill_lows (g, p, frame, scale, lows);
+  fill_lows (g, p, frame, scale, work, lows);
   for (gsize k = 0; k < (gsize)g->n * g->n; k++)
     {
       double low = MAX (sigma_at (lows, g->mu[k], g->edge_mu), p->low_gauss);
@@ -436,7 +449,7 @@ tf_hint_grid_new (const TfFrame *frame, const TfHintParams *params, double scale
   TfWork whole = { .workers = work != NULL ? work->workers : NULL };
   tf_bands_run (&whole, 3 * TF_BAND_ROWS, smooth_part, &smoothing);
   divide (g, flux, area);
-  fill_levels (g, params, frame, scale);
+  fill_levels (g, params, frame, scale, &whole);
   return g;
 }
 

@@ -69,7 +69,7 @@ find_cut (const TfGeometry *geometry, const TfFill *fill, const TfMaskBox *box, 
   return cut.all > 0.0 ? 1.0 - cut.seen / cut.all : 0.0;
 }
 
-static guint
+__attribute__ ((target_clones ("arch=x86-64-v3", "default"))) static guint
 count_above (const float *field, guint n, float least)
 {
   guint above = 0;
@@ -97,13 +97,13 @@ count_most (const TfMask *mask, const TfFrame *frame, float least)
 static guint
 choose_columns (const Row *row, const float *field, guint from, guint to, guint n, double mu_min, float least, gboolean map)
 {
-  for (guint k = from; k < to; k++)
+  for (guint k = from; k < to; k++) /* without a branch: strong and weak pixels lie mixed */
     {
-      if ((least > 0.0f && !(fabsf (field[k]) >= least)) || !(map || row->mu[k] >= mu_min))
-        continue;
-      if (n < k)
-        memcpy (row->unit[n], row->unit[k], sizeof (Unit));
-      row->at[n++] = k;
+      gboolean strong = !(least > 0.0f) | (fabsf (field[k]) >= least);
+      gboolean near = map | (row->mu[k] >= mu_min);
+      memmove (row->unit[n], row->unit[k], sizeof (Unit));
+      row->at[n] = k;
+      n += strong & near;
     }
   return n;
 }
@@ -150,6 +150,7 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
       = tf_frame_get_pixels (frame) + (gsize)y * tf_frame_get_width (frame) + box->x0;
   guint n = find_places (g, box, y, field, mu_min, least, row);
   tf_fill_row (fill, (const Unit *)row->unit, n, row->inside);
+  TfMaskPixel *pixel = mask->pixels + mask->n;
   for (guint j = 0; j < n; j++)
     {
       guint k = row->at[j];
@@ -160,14 +161,15 @@ fill_row (TfMask *mask, const TfFrame *frame, const TfFill *fill, double mu_min,
           mask->missing++;
           continue;
         }
-      TfMaskPixel *pixel = &mask->pixels[mask->n++];
       pixel->x = box->x0 + k;
       pixel->y = y;
       pixel->field = field[k];
       pixel->mu = map ? 1.0f : (float)row->mu[k];
       pixel->area_mm2 = row->area[k];
       memcpy (pixel->unit, row->unit[j], sizeof pixel->unit);
+      pixel++;
     }
+  mask->n = (guint)(pixel - mask->pixels);
 }
 
 static void
