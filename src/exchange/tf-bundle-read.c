@@ -170,7 +170,10 @@ read_sample (TfBundle *bundle, const TfZip *zip, const char *path, GError **erro
   g_autofree char *text = dup_file (zip, TF_BUNDLE_SAMPLE, path, error);
   g_autoptr (TfCells) table
       = text != NULL ? tf_cells_read_text (text, strlen (text), path, error) : NULL;
-  return table != NULL && read_rows (bundle->taken, table, path, error);
+  if (table == NULL || !read_rows (bundle->taken, table, path, error))
+    return FALSE;
+  tf_study_taken_close (bundle->taken);
+  return TRUE;
 }
 
 static gboolean

@@ -51,9 +51,64 @@ tf_study_fact_has_floor (const TfStudyFact *fact, double gauss)
   return fact->even && fabs (fact->floor_gauss - gauss) <= 0.005 * gauss;
 }
 
+/* -- their order ------------------------------------------------------------------------------- */
+
+/* Those of one moment by their latitude, so that no sum hangs on the order of the rows in a ledger or a
+ * file. */
+static void
+order_ties (guint *order, const double *times, const double *lats, guint n)
+{
+  g_autofree double *keys = tf_new_many (double, n + 1);
+  for (guint from = 0, to; from < n; from = to)
+    {
+      for (to = from; to < n && times[order[to]] == times[order[from]]; to++)
+        keys[to - from] = lats[order[to]];
+      if (to - from < 2)
+        {
+          to = MAX (to, from + 1); /* NaN equals nothing */
+          continue;
+        }
+      g_autofree guint *places = tf_sort_order (keys, to - from);
+      g_autofree guint *before = g_memdup2 (order + from, (to - from) * sizeof *order);
+      for (guint k = from; k < to; k++)
+        order[k] = before[places[k - from]];
+    }
+}
+
+/* By time, then latitude. */
+static guint *
+order_places (const double *times, const double *lats, guint n)
+{
+  guint *order = tf_sort_order (times, n);
+  order_ties (order, times, lats, n);
+  return order;
+}
+
+static guint *
+order_rows (const GPtrArray *rows)
+{
+  g_autofree double *times = tf_new_many (double, rows->len + 1);
+  g_autofree double *lats = tf_new_many (double, rows->len + 1);
+  for (guint k = 0; k < rows->len; k++)
+    {
+      const TfMeasure *m = &((const TfRow *)g_ptr_array_index (rows, k))->measure;
+      times[k] = m->time.s;
+      lats[k] = m->lat_deg;
+    }
+  return order_places (times, lats, rows->len);
+}
+
+static void
+put_in_order (GPtrArray *rows, const guint *order)
+{
+  g_autofree gpointer *before = g_memdup2 (rows->pdata, rows->len * sizeof *before);
+  for (guint k = 0; k < rows->len; k++)
+    rows->pdata[k] = before[order[k]];
+}
+
 /* -- briefs ---------------------------------------------------------------------------------- */
 
-/* All that is read, in the order of the ledger's rows at equal times: marks, outside rows, hints. */
+/* All that is read: marks, outside rows, hints. */
 typedef struct
 {
   const TfBrief *briefs;
@@ -123,14 +178,22 @@ static guint *
 order_sources (const Sources *s, guint n)
 {
   g_autofree double *times = tf_new_many (double, n + 1);
+  g_autofree double *lats = tf_new_many (double, n + 1);
   guint at = 0;
-  for (guint k = 0; k < s->n_marks; k++)
-    times[at++] = s->briefs[k].time_s;
+  for (guint k = 0; k < s->n_briefs; k++)
+    {
+      if (k == s->n_marks)
+        at += s->outside->len;
+      times[at] = s->briefs[k].time_s;
+      lats[at++] = s->briefs[k].lat_deg;
+    }
   for (guint k = 0; k < s->outside->len; k++)
-    times[at++] = ((const TfRow *)g_ptr_array_index (s->outside, k))->measure.time.s;
-  for (guint k = s->n_marks; k < s->n_briefs; k++)
-    times[at++] = s->briefs[k].time_s;
-  return tf_sort_order (times, n);
+    {
+      const TfMeasure *m = &((const TfRow *)g_ptr_array_index (s->outside, k))->measure;
+      times[s->n_marks + k] = m->time.s;
+      lats[s->n_marks + k] = m->lat_deg;
+    }
+  return order_places (times, lats, n);
 }
 
 static void
@@ -208,8 +271,12 @@ take_whole_rows (TfStudyTaken *taken, TfLedger *ledger, GError **error)
                              .outside = TRUE,
                              .no_outlines = TRUE };
   taken->rows = tf_study_rows (ledger, &query, taken->floor, error);
-  taken->all = taken->rows != NULL ? tf_study_sample_rows (taken->rows) : NULL;
-  return taken->all != NULL;
+  if (taken->rows == NULL)
+    return FALSE;
+  g_autofree guint *order = order_rows (taken->rows);
+  put_in_order (taken->rows, order);
+  taken->all = tf_study_sample_rows (taken->rows);
+  return TRUE;
 }
 
 /* With what the scales of instruments say, or without. */
@@ -288,6 +355,22 @@ tf_study_taken_add (TfStudyTaken *taken, TfRow *row, TfSampleRow sample)
   sample.row = taken->rows->len;
   g_ptr_array_add (taken->rows, row);
   tf_sample_add (taken->all, &sample);
+}
+
+void
+tf_study_taken_close (TfStudyTaken *taken)
+{
+  g_autofree guint *order = order_rows (taken->rows);
+  TfSample *given = g_steal_pointer (&taken->all);
+  taken->all = tf_sample_new_sized (taken->rows->len);
+  for (guint k = 0; k < taken->rows->len; k++)
+    {
+      TfSampleRow row = *tf_sample_get (given, order[k]);
+      row.row = k;
+      tf_sample_add (taken->all, &row);
+    }
+  put_in_order (taken->rows, order);
+  tf_sample_free (given);
 }
 
 TfStudyRows

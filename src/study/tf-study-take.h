@@ -24,6 +24,9 @@ TfStudyTaken *tf_study_take_whole (const TfStudy *study, TfLedger *ledger, GErro
 TfStudyTaken *tf_study_taken_new (double floor_gauss, GPtrArray *scales);
 /** tf_study_taken_add: @row: (transfer full). The number of @sample is set. */
 void tf_study_taken_add (TfStudyTaken *taken, TfRow *row, TfSampleRow sample);
+/** tf_study_taken_close: after the last one: they are put into the order in which a ledger's rows are
+ * taken, by time and latitude, so that no sum hangs on how a file has them. */
+void tf_study_taken_close (TfStudyTaken *taken);
 TfStudyTaken *tf_study_taken_ref (TfStudyTaken *taken);
 void tf_study_taken_unref (TfStudyTaken *taken);
 /** tf_study_taken_serves: whether @study needs no other rows than these. */

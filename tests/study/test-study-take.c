@@ -8,6 +8,7 @@
 
 #include "tf-check.h"
 #include "tf-ledger-outside.h"
+#include "tf-ledger-scales.h"
 #include "tf-sieve.h"
 #include "tf-study-take.h"
 
@@ -251,9 +252,36 @@ test_floors_move_the_rows (void)
   g_assert_cmpuint (kept->n_other_floor, ==, 0);
 }
 
+/* However a file has them, they are taken by time and, at one moment, by latitude. */
+static void
+test_order (void)
+{
+  static const double times[] = { 30, 10, 20, 10, 10 }, lats[] = { 5, 7, 0, -2, NAN };
+  static const guint expected[] = { 3, 1, 4, 2, 0 };
+  g_autoptr (TfStudyTaken) taken
+      = tf_study_taken_new (48, g_ptr_array_new_with_free_func ((GDestroyNotify)tf_kept_scale_free));
+  for (guint k = 0; k < G_N_ELEMENTS (times); k++)
+    {
+      TfRow *row = g_new0 (TfRow, 1);
+      row->mark = k;
+      row->measure.time.s = times[k];
+      row->measure.lat_deg = lats[k];
+      tf_study_taken_add (taken, row, (TfSampleRow){ .time = { times[k] }, .region = k + 1 });
+    }
+  tf_study_taken_close (taken);
+  for (guint k = 0; k < G_N_ELEMENTS (times); k++)
+    {
+      const TfSampleRow *row = tf_sample_get (tf_study_taken_get_sample (taken), k);
+      g_assert_cmpint (tf_study_taken_get_row (taken, k)->mark, ==, expected[k]);
+      g_assert_cmpuint (row->region, ==, expected[k] + 1);
+      g_assert_cmpuint (row->row, ==, k);
+    }
+}
+
 void
 test_study_add_take (void)
 {
+  g_test_add_func ("/study/take/by-time-and-latitude", test_order);
   g_test_add_func ("/study/what-if/floors-move-the-rows", test_floors_move_the_rows);
   g_test_add_func ("/study/take/briefs-say-what-whole-rows-say", test_briefs);
 }
