@@ -66,7 +66,7 @@ draw_bar (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, const TfHa
   tf_chart_set (cr, style->breaks);
   cairo_rectangle (cr, x, y - height / 2, end - x, height);
   cairo_fill (cr);
-  if (isfinite (row->bounds.low))
+  if (isfinite (row->bounds.low) && row->bounds.low <= plot->x1)
     {
       double under = y + height / 2 + style->text_pt * 0.32;
       tf_chart_set (cr, style->slate);

@@ -149,12 +149,15 @@ tf_plot_whisker_x (cairo_t *cr, const TfPlot *plot, const TfChartStyle *style, d
 {
   if (!isfinite (low) || !isfinite (high))
     return;
-  double a = tf_plot_x (plot, fmax (low, plot->x0)), b = tf_plot_x (plot, fmin (high, plot->x1));
+  double a = tf_plot_x (plot, CLAMP (low, plot->x0, plot->x1)),
+         b = tf_plot_x (plot, CLAMP (high, plot->x0, plot->x1));
   cairo_new_path (cr);
   cairo_move_to (cr, a, y_units);
   cairo_line_to (cr, b, y_units);
-  whisker_end_x (cr, a, y_units, foot, low < plot->x0, -1);
-  whisker_end_x (cr, b, y_units, foot, high > plot->x1, 1);
+  if (low <= plot->x1) /* else only the arrow that points to where it is */
+    whisker_end_x (cr, a, y_units, foot, low < plot->x0, -1);
+  if (high >= plot->x0)
+    whisker_end_x (cr, b, y_units, foot, high > plot->x1, 1);
   stroke_whisker (cr, style);
 }
 

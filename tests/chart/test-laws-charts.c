@@ -10,6 +10,7 @@
 #include "made-study.h"
 #include "tf-check.h"
 #include "tf-figure.h"
+#include "tf-plot-private.h"
 
 #define WIDTH 420
 
@@ -75,6 +76,23 @@ the_bars_are_as_long_as_the_shares (void)
   for (guint k = 0; k < 4; k++)
     tf_check_near ("length of a bar", lengths[k] / lengths[4], shares[k] / shares[4],
                    4 / lengths[4]);
+}
+
+/* Wherever it lies, an interval stays on its axis: past either end there are numbers and names. */
+static void
+an_interval_ends_with_its_axis (void)
+{
+  static const double intervals[][2] = { { 0.1, 0.2 }, { 0.2, 0.9 }, { 0.7, 0.9 }, { -0.4, 0.1 }, { -0.9, -0.2 } };
+  const TfPlot plot = { .plot = { 40, 0, 100, 40 }, .x0 = 0, .x1 = 0.3, .y0 = 0, .y1 = 1 };
+  TfChartStyle style = tf_chart_style (FALSE, FALSE, 11);
+  for (guint k = 0; k < G_N_ELEMENTS (intervals); k++)
+    {
+      g_auto (Picture) picture = picture_new (200, 40, style.ground);
+      tf_plot_whisker_x (picture.cr, &plot, &style, intervals[k][0], intervals[k][1], 20, 4);
+      g_assert_cmpuint (picture_count_in (&picture, style.ink, 0.5, 38, 0, 142, 40), >, 5);
+      g_assert_cmpuint (picture_count_in (&picture, style.ink, 0.5, 0, 0, 38, 40), ==, 0);
+      g_assert_cmpuint (picture_count_in (&picture, style.ink, 0.5, 142, 0, 200, 40), ==, 0);
+    }
 }
 
 static void
@@ -347,6 +365,7 @@ add_laws_chart_tests (void)
 {
   g_test_add_func ("/chart/laws/the-bars-are-as-long-as-the-shares",
                    the_bars_are_as_long_as_the_shares);
+  g_test_add_func ("/chart/laws/an-interval-ends-with-its-axis", an_interval_ends_with_its_axis);
   g_test_add_func ("/chart/laws/a-bar-opens-its-regions-one-after-the-other",
                    a_bar_opens_its_regions_one_after_the_other);
   g_test_add_func ("/chart/laws/the-line-of-joy-is-drawn-where-the-fit-is",
