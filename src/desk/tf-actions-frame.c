@@ -166,13 +166,6 @@ tf_window_add_frame_actions (TfWindow *self)
 }
 
 static void
-enable (TfWindow *self, const char *name, gboolean enabled)
-{
-  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
-  g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
-}
-
-static void
 set_state (TfWindow *self, const char *name, const char *state)
 {
   GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
@@ -188,14 +181,14 @@ tf_window_update_frame_actions (TfWindow *self)
   static const char *const of_ledger[]
       = { "watch-folder", "watch-path", "find-moved", "find-moved-in" };
   for (guint k = 0; k < G_N_ELEMENTS (of_ledger); k++)
-    enable (self, of_ledger[k], writable);
-  enable (self, "stop-watching", tf_session_get_watched (session) != NULL);
+    tf_window_enable (self, of_ledger[k], writable);
+  tf_window_enable (self, "stop-watching", tf_session_get_watched (session) != NULL);
   const char *instrument = tf_session_get_roll_instrument (session);
   set_state (self, "roll-state", tf_roll_filter_name (tf_session_get_roll_filter (session)));
   set_state (self, "roll-instrument", instrument != NULL ? instrument : "");
-  enable (self, "correct-geometry", can);
-  enable (self, "try-geometry", can);
-  enable (self, "fit-limb", can);
-  enable (self, "keep-geometry", can && writable && tf_correction_is_set (&preview));
-  enable (self, "measure-again", writable && tf_session_count_elsewhere (session) > 0);
+  tf_window_enable (self, "correct-geometry", can);
+  tf_window_enable (self, "try-geometry", can);
+  tf_window_enable (self, "fit-limb", can);
+  tf_window_enable (self, "keep-geometry", can && writable && tf_correction_is_set (&preview));
+  tf_window_enable (self, "measure-again", writable && tf_session_count_elsewhere (session) > 0);
 }

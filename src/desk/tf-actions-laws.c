@@ -150,13 +150,6 @@ tf_window_add_laws_actions (TfWindow *self)
 }
 
 static void
-enable (TfWindow *self, const char *name, gboolean enabled)
-{
-  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
-  g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
-}
-
-static void
 set_state (TfWindow *self, const char *name, gboolean on)
 {
   GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
@@ -169,15 +162,15 @@ tf_window_update_laws_actions (TfWindow *self)
   TfSession *session = tf_window_get_session (self);
   const TfDivideHold *hold = tf_session_get_divide (session);
   gboolean movable = tf_session_can_move_divide (session), shown = tf_session_shows_laws (session);
-  enable (self, "next-divide", shown);
-  enable (self, "choose-divide", shown);
-  enable (self, "next-handle", hold->cycle != 0);
-  enable (self, "move-divide", movable);
-  enable (self, "shift-divide", tf_session_can_shift_divide (session));
-  enable (self, "next-minimum", shown && tf_session_is_writable (session));
-  enable (self, "keep-divide", hold->in_hand);
-  enable (self, "compute-divide", movable);
-  enable (self, "put-back-divide", hold->cycle != 0);
+  tf_window_enable (self, "next-divide", shown);
+  tf_window_enable (self, "choose-divide", shown);
+  tf_window_enable (self, "next-handle", hold->cycle != 0);
+  tf_window_enable (self, "move-divide", movable);
+  tf_window_enable (self, "shift-divide", tf_session_can_shift_divide (session));
+  tf_window_enable (self, "next-minimum", shown && tf_session_is_writable (session));
+  tf_window_enable (self, "keep-divide", hold->in_hand);
+  tf_window_enable (self, "compute-divide", movable);
+  tf_window_enable (self, "put-back-divide", hold->cycle != 0);
   set_state (self, "show-polarity", tf_session_get_show_polarity (session));
   set_state (self, "all-relations", tf_session_get_all_relations (session));
   tf_window_update_study_actions (self);

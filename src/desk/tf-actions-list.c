@@ -79,18 +79,9 @@ ACTION (region_sheet)
 ACTION (region_sheet_as) { tf_session_write_region (session_of (window), g_variant_get_string (value, NULL)); }
 
 /* -- deeds */
-static void
-judge (gpointer window, GSimpleAction *action, gboolean (*deed) (TfSession *))
-{
-  if (tf_session_get_person (session_of (window)) == NULL)
-    tf_window_ask_person (window, g_action_get_name (G_ACTION (action)));
-  else
-    deed (session_of (window));
-}
-
-ACTION (settle_note) { judge (window, action, tf_session_settle); }
-ACTION (hand_over) { judge (window, action, tf_session_hand_over); }
-ACTION (confirm_match) { judge (window, action, tf_session_confirm); }
+ACTION (settle_note) { tf_window_judge (window, action, tf_session_settle); }
+ACTION (hand_over) { tf_window_judge (window, action, tf_session_hand_over); }
+ACTION (confirm_match) { tf_window_judge (window, action, tf_session_confirm); }
 
 ACTION (bring)
 {
@@ -121,30 +112,23 @@ tf_window_add_list_actions (TfWindow *self)
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
 }
 
-static void
-enable (TfWindow *self, const char *name, gboolean enabled)
-{
-  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
-  g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
-}
-
 void
 tf_window_update_list_actions (TfWindow *self)
 {
   TfSession *session = tf_window_get_session (self);
   gboolean writable = tf_session_is_writable (session), frame = tf_session_get_frame_item (session) != NULL;
   gboolean ledger = tf_session_has_ledger (session);
-  enable (self, "next-listed", tf_session_get_shift (session) != NULL);
-  enable (self, "previous-listed", tf_session_get_shift (session) != NULL);
-  enable (self, "newest-frame", frame);
-  enable (self, "close-look", tf_session_get_frame (session) != NULL);
-  enable (self, "shift-sheet", ledger && frame);
-  enable (self, "shift-sheet-as", ledger && frame);
-  enable (self, "region-sheet", tf_session_can_write_region (session));
-  enable (self, "region-sheet-as", tf_session_can_write_region (session));
-  enable (self, "settle-note", tf_session_can_settle (session));
-  enable (self, "hand-over", writable && frame);
-  enable (self, "confirm-match", tf_session_can_confirm (session));
-  enable (self, "bring", writable);
-  enable (self, "bring-file", writable);
+  tf_window_enable (self, "next-listed", tf_session_get_shift (session) != NULL);
+  tf_window_enable (self, "previous-listed", tf_session_get_shift (session) != NULL);
+  tf_window_enable (self, "newest-frame", frame);
+  tf_window_enable (self, "close-look", tf_session_get_frame (session) != NULL);
+  tf_window_enable (self, "shift-sheet", ledger && frame);
+  tf_window_enable (self, "shift-sheet-as", ledger && frame);
+  tf_window_enable (self, "region-sheet", tf_session_can_write_region (session));
+  tf_window_enable (self, "region-sheet-as", tf_session_can_write_region (session));
+  tf_window_enable (self, "settle-note", tf_session_can_settle (session));
+  tf_window_enable (self, "hand-over", writable && frame);
+  tf_window_enable (self, "confirm-match", tf_session_can_confirm (session));
+  tf_window_enable (self, "bring", writable);
+  tf_window_enable (self, "bring-file", writable);
 }

@@ -59,13 +59,6 @@ tf_window_add_mark_actions (TfWindow *self)
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
 }
 
-static void
-enable (TfWindow *self, const char *name, gboolean enabled)
-{
-  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
-  g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
-}
-
 void
 tf_window_restore_units (TfWindow *self)
 {
@@ -98,6 +91,6 @@ tf_window_update_mark_actions (TfWindow *self)
 {
   TfSession *session = tf_window_get_session (self);
   show_units (self, tf_session_get_units (session));
-  enable (self, "keep-new", tf_session_can_keep_new (session));
-  enable (self, "split-proposed", tf_session_get_proposal (session) != NULL);
+  tf_window_enable (self, "keep-new", tf_session_can_keep_new (session));
+  tf_window_enable (self, "split-proposed", tf_session_get_proposal (session) != NULL);
 }

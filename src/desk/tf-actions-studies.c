@@ -419,13 +419,6 @@ tf_window_add_study_actions (TfWindow *self)
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
 }
 
-static void
-enable (TfWindow *self, const char *name, gboolean enabled)
-{
-  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
-  g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
-}
-
 void
 tf_window_update_study_actions (TfWindow *self)
 {
@@ -439,17 +432,17 @@ tf_window_update_study_actions (TfWindow *self)
   guint version = tf_session_get_kept_version (session);
   GAction *choose = g_action_map_lookup_action (G_ACTION_MAP (self), "choose-study");
   g_simple_action_set_state (G_SIMPLE_ACTION (choose), g_variant_new_string (name));
-  enable (self, "choose-study", shown);
-  enable (self, "keep-study", writes && (changed || version == 0));
-  enable (self, "keep-study-as", writes);
-  enable (self, "rename-study", writes && version > 0);
-  enable (self, "put-away-study", writes && version > 0);
-  enable (self, "revert-study", changed && (version > 0 || strcmp (name, "default") == 0));
-  enable (self, "open-study", writes);
-  enable (self, "save-study", shown);
-  enable (self, "keep-edition", writes && !making);
-  enable (self, "apply-what-if", writes && !making);
-  enable (self, "cancel-edition", making);
-  enable (self, "compare-editions", shown && !making);
+  tf_window_enable (self, "choose-study", shown);
+  tf_window_enable (self, "keep-study", writes && (changed || version == 0));
+  tf_window_enable (self, "keep-study-as", writes);
+  tf_window_enable (self, "rename-study", writes && version > 0);
+  tf_window_enable (self, "put-away-study", writes && version > 0);
+  tf_window_enable (self, "revert-study", changed && (version > 0 || strcmp (name, "default") == 0));
+  tf_window_enable (self, "open-study", writes);
+  tf_window_enable (self, "save-study", shown);
+  tf_window_enable (self, "keep-edition", writes && !making);
+  tf_window_enable (self, "apply-what-if", writes && !making);
+  tf_window_enable (self, "cancel-edition", making);
+  tf_window_enable (self, "compare-editions", shown && !making);
   tf_window_update_bundle_actions (self);
 }

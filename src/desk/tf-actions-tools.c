@@ -138,13 +138,6 @@ tf_window_add_tool_actions (TfWindow *self)
   g_action_map_add_action_entries (G_ACTION_MAP (self), entries, G_N_ELEMENTS (entries), self);
 }
 
-static void
-enable (TfWindow *self, const char *name, gboolean enabled)
-{
-  GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
-  g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
-}
-
 void
 tf_window_update_tool_actions (TfWindow *self)
 {
@@ -156,23 +149,23 @@ tf_window_update_tool_actions (TfWindow *self)
     {
       GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), tools[k].action);
       gboolean in_hand = tf_session_get_tool (session) == tools[k].tool;
-      enable (self, tools[k].action, base != NULL || in_hand);
+      tf_window_enable (self, tools[k].action, base != NULL || in_hand);
       g_simple_action_set_state (G_SIMPLE_ACTION (action), g_variant_new_boolean (in_hand));
     }
   static const char *const of_base[] = { "pin-at", "pin-here" };
   for (guint k = 0; k < G_N_ELEMENTS (of_base); k++)
-    enable (self, of_base[k], base != NULL);
-  enable (self, "unpin", base != NULL && tf_outline_get_n_pins (base) > 0);
-  enable (self, "join", tf_session_can_join (session));
+    tf_window_enable (self, of_base[k], base != NULL);
+  tf_window_enable (self, "unpin", base != NULL && tf_outline_get_n_pins (base) > 0);
+  tf_window_enable (self, "join", tf_session_can_join (session));
   static const char *const of_regions[]
       = { "extend-next", "extend-previous", "choose-all", "next-mark", "previous-mark" };
   for (guint k = 0; k < G_N_ELEMENTS (of_regions); k++)
-    enable (self, of_regions[k], regions > 0);
-  enable (self, "carry", tf_session_can_carry (session));
-  enable (self, "carry-on", tf_session_can_carry_on (session));
+    tf_window_enable (self, of_regions[k], regions > 0);
+  tf_window_enable (self, "carry", tf_session_can_carry (session));
+  tf_window_enable (self, "carry-on", tf_session_can_carry_on (session));
   gboolean describe = tf_session_can_describe (session);
   static const char *const of_mark[] = { "label", "external-number", "journal-of-region" };
   for (guint k = 0; k < G_N_ELEMENTS (of_mark); k++)
-    enable (self, of_mark[k], describe);
-  enable (self, "journal", tf_session_has_ledger (session));
+    tf_window_enable (self, of_mark[k], describe);
+  tf_window_enable (self, "journal", tf_session_has_ledger (session));
 }

@@ -81,18 +81,18 @@ ACTION (next_hint) { step_hint (window, 1); }
 ACTION (previous_hint) { step_hint (window, -1); }
 
 /* A deed that needs a name asks for it and is then done. */
-static void
-judge (gpointer window, GSimpleAction *action, gboolean (*deed) (TfSession *))
+void
+tf_window_judge (gpointer window, GSimpleAction *action, gboolean (*deed) (TfSession *))
 {
-  if (tf_session_get_person (session_of (window)) == NULL)
+  if (tf_session_get_person (tf_window_get_session (window)) == NULL)
     tf_window_ask_person (window, g_action_get_name (G_ACTION (action)));
   else
-    deed (session_of (window));
+    deed (tf_window_get_session (window));
 }
 
-ACTION (keep) { judge (window, action, tf_session_keep); }
-ACTION (drop_hint) { judge (window, action, tf_session_drop); }
-ACTION (withdraw) { judge (window, action, tf_session_withdraw); }
+ACTION (keep) { tf_window_judge (window, action, tf_session_keep); }
+ACTION (drop_hint) { tf_window_judge (window, action, tf_session_drop); }
+ACTION (withdraw) { tf_window_judge (window, action, tf_session_withdraw); }
 ACTION (undo) { tf_session_undo (session_of (window)); }
 ACTION (redo) { tf_session_redo (session_of (window)); }
 ACTION (set_class)
@@ -240,8 +240,8 @@ tf_window_add_actions (TfWindow *self)
   tf_window_add_mark_actions (self);
 }
 
-static void
-enable (TfWindow *self, const char *name, gboolean enabled)
+void
+tf_window_enable (TfWindow *self, const char *name, gboolean enabled)
 {
   GAction *action = g_action_map_lookup_action (G_ACTION_MAP (self), name);
   g_simple_action_set_enabled (G_SIMPLE_ACTION (action), enabled);
@@ -299,24 +299,24 @@ tf_window_update_actions (TfWindow *self)
       = tf_session_get_tool (session) != TF_TOOL_NONE || tf_session_get_draft (session) != NULL;
   static const char *const on_frame[] = { "draw", "polygon", "fit", "zoom-in", "zoom-out" };
   for (guint k = 0; k < G_N_ELEMENTS (on_frame); k++)
-    enable (self, on_frame[k], frame);
-  enable (self, "make-here", tf_window_can_make_here (self));
+    tf_window_enable (self, on_frame[k], frame);
+  tf_window_enable (self, "make-here", tf_window_can_make_here (self));
   gboolean waiting = hint || tf_session_has_waiting_frame (session);
-  enable (self, "next-hint", waiting);
-  enable (self, "previous-hint", waiting);
-  enable (self, "keep", tf_session_can_keep (session));
-  enable (self, "drop-hint", tf_session_can_drop (session));
-  enable (self, "withdraw", tf_session_can_withdraw (session));
-  enable (self, "class", tf_session_can_describe (session));
-  enable (self, "note", tf_session_can_describe (session));
-  enable (self, "undo", tf_session_can_undo (session));
-  enable (self, "redo", tf_session_can_redo (session));
-  enable (self, "finish-drawing",
+  tf_window_enable (self, "next-hint", waiting);
+  tf_window_enable (self, "previous-hint", waiting);
+  tf_window_enable (self, "keep", tf_session_can_keep (session));
+  tf_window_enable (self, "drop-hint", tf_session_can_drop (session));
+  tf_window_enable (self, "withdraw", tf_session_can_withdraw (session));
+  tf_window_enable (self, "class", tf_session_can_describe (session));
+  tf_window_enable (self, "note", tf_session_can_describe (session));
+  tf_window_enable (self, "undo", tf_session_can_undo (session));
+  tf_window_enable (self, "redo", tf_session_can_redo (session));
+  tf_window_enable (self, "finish-drawing",
           n >= (tf_session_get_tool (session) == TF_TOOL_SPLIT ? 2 : 3));
-  enable (self, "cancel-drawing", drawing || tf_session_get_region (session) != NULL);
-  enable (self, "cancel-work", tf_session_get_progress (session, NULL) != NULL);
-  enable (self, "retry", tf_session_get_problem (session) != NULL);
-  enable (self, "give-up", tf_session_get_problem (session) != NULL);
+  tf_window_enable (self, "cancel-drawing", drawing || tf_session_get_region (session) != NULL);
+  tf_window_enable (self, "cancel-work", tf_session_get_progress (session, NULL) != NULL);
+  tf_window_enable (self, "retry", tf_session_get_problem (session) != NULL);
+  tf_window_enable (self, "give-up", tf_session_get_problem (session) != NULL);
   update_states (self, session);
   tf_window_update_plate_actions (self);
   tf_window_update_frame_actions (self);

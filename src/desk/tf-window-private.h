@@ -64,6 +64,10 @@ void tf_window_open_demo (TfWindow *window);
 void tf_window_add_drop (TfWindow *window);
 /** tf_window_ask_person: @then: (nullable): window action to activate when a name was given */
 void tf_window_ask_person (TfWindow *window, const char *then);
+/** tf_window_judge: a deed of the session's person; where there is none, the name is asked for and the action done then. */
+void tf_window_judge (gpointer window, GSimpleAction *action, gboolean (*deed) (TfSession *));
+/** tf_window_enable: a window action of that name */
+void tf_window_enable (TfWindow *window, const char *name, gboolean enabled);
 void tf_window_show_about (TfWindow *window);
 void tf_window_show_cautions (TfWindow *window);
 
