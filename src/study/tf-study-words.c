@@ -2,6 +2,7 @@
  * SPDX-FileCopyrightText: The Tiltfield developers
  */
 #include <math.h>
+#include <string.h>
 #include <glib/gi18n-lib.h>
 
 #include "tf-study-private.h"
@@ -33,14 +34,36 @@ all_tilts (const TfFindings *findings)
   return NULL;
 }
 
-/* "cmd-beyond (12); mu-below (3)"; NULL for nothing. */
+/* What a row was left out by, or lacks. Conditions that a person built are their own words. */
+static const char *
+sieve_words (const char *key)
+{
+  static const char *const words[][2] = {
+    { "beyond-the-sampling-rule", N_ ("the sampling rule") },
+    { "cmd-beyond", N_ ("distance from the central meridian") },
+    { "ephemeral", N_ ("being ephemeral") },
+    { "flux-below", N_ ("unsigned flux") },
+    { "model-map", N_ ("being on a model map") },
+    { "mu-below", N_ ("μ") },
+    { "not-ephemeral", N_ ("not being ephemeral") },
+    { "outside-hint", N_ ("being a hint of an outside table") },
+    { "separation-below", N_ ("separation of the poles") },
+    { "unipolar-hint", N_ ("being a hint of one polarity") },
+  };
+  for (guint k = 0; k < G_N_ELEMENTS (words); k++)
+    if (strcmp (key, words[k][0]) == 0)
+      return _ (words[k][1]);
+  return key;
+}
+
+/* "distance from the central meridian (12); μ (3)"; NULL for nothing. */
 static char *
 dup_counts (GHashTable *counts)
 {
   g_autoptr (GList) keys = g_list_sort (g_hash_table_get_keys (counts), (GCompareFunc)g_strcmp0);
   g_autoptr (GString) text = g_string_new (NULL);
   for (GList *l = keys; l != NULL; l = l->next)
-    g_string_append_printf (text, "%s%s (%u)", text->len > 0 ? "; " : "", (char *)l->data,
+    g_string_append_printf (text, "%s%s (%u)", text->len > 0 ? "; " : "", sieve_words (l->data),
                             GPOINTER_TO_UINT (g_hash_table_lookup (counts, l->data)));
   return text->len > 0 ? g_string_free (g_steal_pointer (&text), FALSE) : NULL;
 }
@@ -52,7 +75,7 @@ add_sieve (GString *out, const TfFindings *findings)
   g_autofree char *left_out = dup_counts (findings->left_out),
                   *passed = dup_counts (findings->passed_without);
   if (left_out != NULL)
-    g_string_append_printf (out, _ ("Left out: %s.\n"), left_out);
+    g_string_append_printf (out, _ ("Left out by %s.\n"), left_out);
   if (passed != NULL)
     g_string_append_printf (out, _ ("Taken although the source lacks what a condition asks about: %s.\n"),
                             passed);

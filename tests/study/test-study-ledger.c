@@ -187,8 +187,8 @@ test_conditions (void)
   g_assert_cmpuint (g_hash_table_size (found->passed_without), ==, 2);
   g_autofree char *words = tf_findings_dup_words (found, study);
   g_assert_nonnull (strstr (words, "too few tilts"));
-  g_assert_nonnull (strstr (words, "Left out: flux-below (1); separation-below (1).\n"));
-  g_assert_nonnull (strstr (words, "lacks what a condition asks about: cmd-beyond (1); mu-below (1).\n"));
+  g_assert_nonnull (strstr (words, "Left out by unsigned flux (1); separation of the poles (1).\n"));
+  g_assert_nonnull (strstr (words, "lacks what a condition asks about: distance from the central meridian (1); μ (1).\n"));
 }
 
 static void
