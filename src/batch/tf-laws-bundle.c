@@ -50,9 +50,9 @@ print_text (const TfFindings *findings, const TfStudy *study, const GPtrArray *d
     printf ("  %s\n", (char *)g_ptr_array_index (differences, k));
   if (not_compared->len == 0)
     return;
-  g_ptr_array_add ((GPtrArray *)not_compared, NULL);
-  g_autofree char *names = g_strjoinv (", ", (char **)not_compared->pdata);
-  printf (_ ("Not compared, since it takes the ledger: %s\n"), names);
+  printf (_ ("Not compared, since it takes the ledger:\n"));
+  for (guint k = 0; k < not_compared->len; k++)
+    printf ("  %s\n", tf_what_if_title (g_ptr_array_index (not_compared, k)));
 }
 
 int

@@ -50,9 +50,9 @@ dup_list (const TfBundleLook *look)
                                     : _ ("Every number is the same, to the digits that are printed."));
   if (look->not_compared == NULL || look->not_compared->len == 0)
     return g_string_free (text, FALSE);
-  g_autofree char *others = tf_laws_dup_lines (look->not_compared);
-  g_strdelimit (others, "-", ' ');
-  g_string_append_printf (text, _ ("\n\nNot compared, because these choices need the ledger:\n%s"), others);
+  g_string_append (text, _ ("\n\nNot compared, because these choices need the ledger:"));
+  for (guint k = 0; k < look->not_compared->len; k++)
+    g_string_append_printf (text, "\n%s", tf_what_if_title (look->not_compared->pdata[k]));
   return g_string_free (text, FALSE);
 }
 

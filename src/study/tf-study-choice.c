@@ -361,6 +361,16 @@ tf_what_if_names (void)
   return names;
 }
 
+const char *
+tf_what_if_title (const char *name)
+{
+  g_return_val_if_fail (name != NULL, "");
+  for (const TfChoice *choice = tf_choices; choice->name != NULL; choice++)
+    if (strcmp (choice->name, name) == 0)
+      return _ (choice->title);
+  return name;
+}
+
 gboolean
 tf_what_if_apply (const char *name, TfStudy *study)
 {

@@ -113,6 +113,10 @@ typedef struct
  * the first, "as-chosen". */
 const char **tf_what_if_names (void);
 
+/** tf_what_if_title: of that name, in the current language; the name itself when it is none of them, as a
+ * newer program may have written. */
+const char *tf_what_if_title (const char *name);
+
 /** tf_what_if_apply: makes that choice the study's own. FALSE, and nothing done, when it is so already
  * or no option of a study says it (another floor, other minima). */
 gboolean tf_what_if_apply (const char *name, TfStudy *study);

@@ -239,6 +239,8 @@ test_floors_move_the_rows (void)
         seen++;
       }
   g_assert_cmpuint (seen, ==, G_N_ELEMENTS (floors));
+  g_assert_cmpstr (tf_what_if_title ("floor-a-fifth-lower"), ==, "even floor a fifth lower");
+  g_assert_cmpstr (tf_what_if_title ("of-a-newer-program"), ==, "of-a-newer-program");
   /* a study that keeps a floor has it however noisy the frames are that come later; the ledger's moves */
   g_autoptr (TfStudyTaken) by_ledger = tf_study_take (study, t.ledger, NULL);
   for (guint k = 0; k < 3; k++)
