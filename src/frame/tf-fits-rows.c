@@ -91,11 +91,11 @@ find_table (const TfHeader *header, Table *table)
   *table = (Table){ .width = tf_header_int (header, "NAXIS1", 0),
                     .rows = tf_header_int (header, "NAXIS2", 0),
                     .extra = tf_header_int (header, "PCOUNT", -1) };
-  gint64 cells = table->width * table->rows;
   return says (header, "XTENSION", "BINTABLE") && tf_header_int (header, "BITPIX", 0) == 8
          && tf_header_int (header, "NAXIS", 0) == 2 && tf_header_int (header, "GCOUNT", 0) == 1
          && table->rows > 0 && table->rows <= MAX_ROWS && table->extra >= 0
-         && find_columns (header, table) && tf_header_int (header, "THEAP", cells) == cells;
+         && find_columns (header, table) /* from here on the width is a sum of a few descriptors */
+         && tf_header_int (header, "THEAP", table->width * table->rows) == table->width * table->rows;
 }
 
 /* Axes and tiles: a tile is a row, and there are as many as the table has rows. */
