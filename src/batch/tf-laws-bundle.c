@@ -50,9 +50,10 @@ print_text (const TfFindings *findings, const TfStudy *study, const GPtrArray *d
     printf ("  %s\n", (char *)g_ptr_array_index (differences, k));
   if (not_compared->len == 0)
     return;
-  printf (_ ("Not compared, since it takes the ledger:\n"));
+  g_autoptr (GString) titles = g_string_new (NULL);
   for (guint k = 0; k < not_compared->len; k++)
-    printf ("  %s\n", tf_what_if_title (g_ptr_array_index (not_compared, k)));
+    g_string_append_printf (titles, "%s%s", k > 0 ? "; " : "", tf_what_if_title (g_ptr_array_index (not_compared, k)));
+  printf (_ ("Not compared, since it takes the ledger: %s\n"), titles->str);
 }
 
 int
